@@ -1,0 +1,1 @@
+//! gatemix: which gates, how far open.

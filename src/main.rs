@@ -1,0 +1,2 @@
+//! The gatemix command.
+fn main() {}
