@@ -1,1 +1,3 @@
-//! gatemix: which gates, how far open.
+//! gatemix: which gates, how far open, so that the river below a dam gets the water it needs.
+
+pub mod problem;
