@@ -1,0 +1,221 @@
+//! The site: pool, outlets, wells, limits and targets, raw as read and checked.
+//!
+//! [`Raw`] holds what a file said, in SI; [`Site`] can only be made from it by [`Site::check`], which
+//! reports every problem at once.
+
+mod check;
+mod outlet;
+mod pool;
+mod raw;
+
+use chrono::FixedOffset;
+
+use crate::target::Target;
+use crate::units::{Datum, Folder};
+
+pub use check::CONDUIT_SLACK_M;
+pub use outlet::{Kind, Leakage, OpenPart, Opens, Outlet, Position, Shape};
+pub use pool::{Pool, RawRow, WidthSource};
+pub use raw::{Raw, RawOutlet, RawPool, RawTarget, RawWell};
+
+/// Where the dam stands.
+#[derive(Debug, Clone, Copy, Default, PartialEq)]
+pub struct Whereabouts {
+    /// Altitude above sea level of elevation 0 of the site's datum, m.
+    pub altitude_m: Option<f64>,
+    /// Latitude, degrees north.
+    pub latitude_deg: Option<f64>,
+}
+
+/// A wet well: a shaft shared by gates, drained by one conduit.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Well {
+    /// Name, unique among wells and outlets.
+    pub name: String,
+    /// Elevation of the conduit, m.
+    pub conduit_m: f64,
+    /// Most gates open at once.
+    pub max_open: Option<usize>,
+    /// Most head across the structure, m.
+    pub max_head_loss_m: Option<f64>,
+    /// Most flow, m3/s.
+    pub max_flow_m3s: Option<f64>,
+}
+
+/// Limits of the total release.
+#[derive(Debug, Clone, Copy, Default, PartialEq)]
+pub struct ReleaseLimits {
+    /// Least total release, m3/s.
+    pub min_m3s: Option<f64>,
+    /// Most total release, m3/s.
+    pub max_m3s: Option<f64>,
+}
+
+/// What is set at an outlet now.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub enum SetNow {
+    /// A flow, m3/s.
+    Flow(f64),
+    /// An opening, 0 to 1.
+    Opening(f64),
+}
+
+/// Water chemistry that turns readings into density.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Chemistry {
+    /// Dissolved solids, mg/L, per uS/cm of specific conductance (recalled: 0.6 to 0.9 by water; default 0.65).
+    pub tds_per_us_cm: f64,
+    /// Density of suspended solids, kg/m3 (quartz; default 2650).
+    pub solids_kg_m3: f64,
+}
+
+impl Default for Chemistry {
+    fn default() -> Self {
+        Self { tds_per_us_cm: crate::water::TDS_PER_US_CM, solids_kg_m3: crate::water::SOLIDS_KG_M3 }
+    }
+}
+
+/// When a cast is flagged; every figure is a choice the site can change.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct CastChecks {
+    /// Longest stretch without a sample, m.
+    pub gap_m: f64,
+    /// Longest stretch beyond the last sample, m.
+    pub extrapolate_m: f64,
+    /// A reading that stands off both neighbours by more is a spike, C.
+    pub spike_c: f64,
+    /// The same for oxygen, mg/L.
+    pub spike_mg_l: f64,
+    /// Oxygen above this share of saturation is flagged.
+    pub oxygen_share: f64,
+    /// A cast older than this is ageing, days.
+    pub ageing_days: f64,
+    /// A cast older than this is stale, days.
+    pub stale_days: f64,
+    /// More heat gained or lost between casts than weather brings, W per m2 of surface.
+    pub heat_w_m2: f64,
+}
+
+impl Default for CastChecks {
+    fn default() -> Self {
+        Self {
+            gap_m: 10.0,
+            extrapolate_m: 5.0,
+            spike_c: 1.0,
+            spike_mg_l: 2.0,
+            oxygen_share: 1.1,
+            ageing_days: 7.0,
+            stale_days: 14.0,
+            heat_w_m2: 400.0,
+        }
+    }
+}
+
+/// Spread of the perturbed cases behind the band (methods section 9; defaults are choice).
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct BandInputs {
+    /// Number of members.
+    pub members: usize,
+    /// Seed of the draws.
+    pub seed: u64,
+    /// Common offset of the cast, standard deviation, C.
+    pub cast_c: f64,
+    /// Common offset of the oxygen readings, standard deviation, mg/L.
+    pub cast_mg_l: f64,
+    /// Heave of the layers, standard deviation at age 0, m.
+    pub heave_m: f64,
+    /// Heave added per day of age, m.
+    pub heave_m_per_day: f64,
+    /// Most heave (standard deviation), m.
+    pub heave_max_m: f64,
+    /// Flow, standard deviation as a share.
+    pub flow_share: f64,
+    /// Least zone factor.
+    pub zone_low: f64,
+    /// Greatest zone factor.
+    pub zone_high: f64,
+    /// What the method misses, standard deviation, C.
+    pub release_c: f64,
+    /// What the method misses, standard deviation, mg/L.
+    pub release_mg_l: f64,
+}
+
+impl Default for BandInputs {
+    fn default() -> Self {
+        Self {
+            members: 200,
+            seed: 1,
+            cast_c: 0.2,
+            cast_mg_l: 0.3,
+            heave_m: 1.0,
+            heave_m_per_day: 0.1,
+            heave_max_m: 3.0,
+            flow_share: 0.02,
+            zone_low: 0.70,
+            zone_high: 1.15,
+            release_c: 0.4,
+            release_mg_l: 0.5,
+        }
+    }
+}
+
+/// A cast the site file names because the logger's own file lacks its time or pool.
+#[derive(Debug, Clone, PartialEq)]
+pub struct ListedCast {
+    /// File inside `profiles/`.
+    pub file: String,
+    /// When it was taken, as written.
+    pub taken: Option<String>,
+    /// Pool elevation, m.
+    pub pool_m: Option<f64>,
+}
+
+/// A checked site.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Site {
+    /// Name.
+    pub name: String,
+    /// River below the dam.
+    pub river: Option<String>,
+    /// Units of bare numbers in the folder.
+    pub units: Folder,
+    /// Datum of every elevation.
+    pub datum: Datum,
+    /// Offset of local times.
+    pub offset: FixedOffset,
+    /// Where it stands.
+    pub place: Whereabouts,
+    /// Pool table.
+    pub pool: Pool,
+    /// Wells.
+    pub wells: Vec<Well>,
+    /// Outlets in the order of the file.
+    pub outlets: Vec<Outlet>,
+    /// Limits of the total release.
+    pub release: ReleaseLimits,
+    /// What is set now: outlet index and setting.
+    pub now: Vec<(usize, SetNow)>,
+    /// Targets.
+    pub targets: Vec<Target>,
+    /// Thresholds of cold water, C.
+    pub cold_water_c: Vec<f64>,
+    /// Water chemistry.
+    pub water: Chemistry,
+    /// When a cast is flagged.
+    pub checks: CastChecks,
+    /// Spread of the perturbed cases.
+    pub band: BandInputs,
+    /// Header words of the logger, mapped to ours.
+    pub columns: Vec<(String, String)>,
+    /// Casts whose time or pool the site file gives.
+    pub casts: Vec<ListedCast>,
+    /// Invented data.
+    pub demonstration: bool,
+}
+
+impl Site {
+    /// Index of an outlet by name.
+    pub fn outlet(&self, name: &str) -> Option<usize> {
+        self.outlets.iter().position(|o| o.name == name)
+    }
+}
