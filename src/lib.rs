@@ -1,3 +1,5 @@
 //! gatemix: which gates, how far open, so that the river below a dam gets the water it needs.
 
 pub mod problem;
+pub mod units;
+pub mod water;

@@ -1,0 +1,16 @@
+//! Quantities and customary units.
+//!
+//! Inside the program every number is SI (m, m2, m3, m3/s, C, mg/L) and a plain `f64`; customary units
+//! exist only where text comes in ([`parse`], [`Folder`]) and goes out ([`System`], [`show`]).
+
+mod datum;
+mod folder;
+mod parse;
+mod show;
+mod unit;
+
+pub use datum::{Datum, DatumError};
+pub use folder::Folder;
+pub use parse::{UnitError, parse};
+pub use show::{System, figure, show};
+pub use unit::{Dimension, Unit};
