@@ -1,5 +1,9 @@
 //! gatemix: which gates, how far open, so that the river below a dam gets the water it needs.
 
 pub mod problem;
+pub mod profile;
+pub mod site;
+pub mod target;
 pub mod units;
 pub mod water;
+pub mod withdrawal;

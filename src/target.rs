@@ -37,8 +37,7 @@ pub struct Span {
 
 impl Span {
     /// Every day of the year.
-    pub const YEAR: Self =
-        Self { from: YearDay { month: 1, day: 1 }, to: YearDay { month: 12, day: 31 } };
+    pub const YEAR: Self = Self { from: YearDay { month: 1, day: 1 }, to: YearDay { month: 12, day: 31 } };
 
     /// Whether a date lies in the span.
     pub fn contains(&self, date: NaiveDate) -> bool {

@@ -22,9 +22,17 @@ impl Site {
     /// refuses. Missing keys were already reported by whoever read the document and stay silent here.
     pub fn check(raw: &Raw) -> (Option<Self>, Vec<Problem>) {
         let mut problems = Vec::new();
-        let pool = raw.pool.bed_m.zip(raw.pool.full_m).and_then(|(bed, full)| {
-            Pool::check(bed, full, &raw.pool.table, raw.pool.width, &mut problems)
-        });
+        let pool =
+            raw.pool.bed_m.zip(raw.pool.full_m).and_then(|(bed, full)| {
+                Pool::check(bed, full, &raw.pool.table, raw.pool.width, &mut problems)
+            });
+        let datum = match raw.datum.as_deref().map_or_else(|| Ok(Datum::default()), Datum::new) {
+            Ok(datum) => Some(datum),
+            Err(error) => {
+                problems.push(Problem::refused("datum", error.to_string(), "").at("datum"));
+                None
+            }
+        };
         let offset = offset(raw, &mut problems);
         let place = place(raw, &mut problems);
         names(raw, &mut problems);
@@ -62,8 +70,8 @@ impl Site {
             Some(Self {
                 name: raw.name.clone()?,
                 river: raw.river.clone(),
-                units: raw.units.clone(),
-                datum: Datum::new(raw.datum.as_deref().unwrap_or("local")),
+                units: raw.units,
+                datum: datum?,
                 offset,
                 place,
                 pool: pool?,
@@ -125,7 +133,10 @@ fn parse_offset(text: &str) -> Option<FixedOffset> {
         _ => return None,
     };
     let (hours, minutes) = text.get(1..)?.split_once(':')?;
-    if hours.len() != 2 || minutes.len() != 2 || !text.get(1..)?.bytes().all(|b| b.is_ascii_digit() || b == b':') {
+    if hours.len() != 2
+        || minutes.len() != 2
+        || !text.get(1..)?.bytes().all(|b| b.is_ascii_digit() || b == b':')
+    {
         return None;
     }
     let (hours, minutes): (i32, i32) = (hours.parse().ok()?, minutes.parse().ok()?);
@@ -135,8 +146,12 @@ fn parse_offset(text: &str) -> Option<FixedOffset> {
 fn place(raw: &Raw, problems: &mut Vec<Problem>) -> Whereabouts {
     if raw.altitude_m.is_some_and(|a| !ALTITUDE_M.contains(&a)) {
         problems.push(
-            Problem::refused("altitude", "altitude is not one of settled land", "give metres (or ft) above sea level")
-                .at("place.altitude"),
+            Problem::refused(
+                "altitude",
+                "altitude is not one of settled land",
+                "give metres (or ft) above sea level",
+            )
+            .at("place.altitude"),
         );
     }
     if raw.latitude_deg.is_some_and(|l| !(-90.0..=90.0).contains(&l)) {
@@ -204,7 +219,8 @@ fn names(raw: &Raw, problems: &mut Vec<Problem>) {
 fn positive(value: Option<f64>, path: String, what: &str, problems: &mut Vec<Problem>) -> Option<f64> {
     if value.is_some_and(|v| v <= 0.0) {
         problems.push(
-            Problem::refused("not-positive", format!("{what} must be above zero"), "correct the figure").at(path),
+            Problem::refused("not-positive", format!("{what} must be above zero"), "correct the figure")
+                .at(path),
         );
     }
     value
@@ -228,21 +244,29 @@ fn wells(raw: &Raw, pool: Option<&Pool>, problems: &mut Vec<Problem>) -> Vec<Opt
             problems.push(
                 Problem::refused(
                     "outside-pool",
-                    format!("conduit {conduit:.2} m lies outside the pool ({:.2} to {:.2} m)", pool.bed_m, pool.top_m()),
+                    format!(
+                        "conduit {conduit:.2} m lies outside the pool ({:.2} to {:.2} m)",
+                        pool.bed_m,
+                        pool.top_m()
+                    ),
                     "check the elevation and its datum",
                 )
                 .at(at("conduit")),
             );
         }
-        let max_open = w.max_open.map(|n| {
-            if n < 1.0 || n.fract() != 0.0 || n > 1000.0 {
+        let max_open = w.max_open.and_then(|n| {
+            let count = (1..=1000_u16).find(|&k| f64::from(k).total_cmp(&n).is_eq());
+            if count.is_none() {
                 problems.push(
-                    Problem::refused("max-open", "max_open is not a count of gates", "give a whole number, 1 or more")
-                        .at(at("max_open")),
+                    Problem::refused(
+                        "max-open",
+                        "max_open is not a count of gates",
+                        "give a whole number, 1 or more",
+                    )
+                    .at(at("max_open")),
                 );
             }
-            // refused just above unless it is a small whole number
-            n.clamp(0.0, 1000.0).round() as usize
+            count.map(usize::from)
         });
         Some(Well {
             name: w.name.clone()?,
@@ -267,13 +291,23 @@ fn outlet(
         let found = raw.wells.iter().position(|w| w.name.as_deref() == Some(name));
         if found.is_none() {
             problems.push(
-                Problem::refused("unknown-well", format!("no well is named `{name}`"), "list it under `wells`, or correct the name")
-                    .at(at("well")),
+                Problem::refused(
+                    "unknown-well",
+                    format!("no well is named `{name}`"),
+                    "list it under `wells`, or correct the name",
+                )
+                .at(at("well")),
             );
         }
         found
     });
-    for (value, key) in [(o.height_m, "height"), (o.width_m, "width"), (o.diameter_m, "diameter"), (o.loss, "loss"), (o.discharge, "discharge")] {
+    for (value, key) in [
+        (o.height_m, "height"),
+        (o.width_m, "width"),
+        (o.diameter_m, "diameter"),
+        (o.loss, "loss"),
+        (o.discharge, "discharge"),
+    ] {
         positive(value, at(key), key, problems);
     }
     not_negative(o.min_submergence_m, at("min_submergence"), "min_submergence", problems);
@@ -282,21 +316,32 @@ fn outlet(
     if let (Some(min), Some(max)) = (o.flow_min_m3s, o.flow_max_m3s)
         && min > max
     {
-        problems.push(Problem::refused("flow-order", "flow.min lies above flow.max", "swap them").at(at("flow.min")));
+        problems.push(
+            Problem::refused("flow-order", "flow.min lies above flow.max", "swap them").at(at("flow.min")),
+        );
     }
     if o.angle_deg.is_some_and(|a| !(0.0..=360.0).contains(&a) || a == 0.0) {
         problems.push(
-            Problem::refused("angle", "the withdrawal angle is above 0 and at most 360 degrees", "180 for a straight face, 360 for a free-standing tower, 90 in a corner")
-                .at(at("angle")),
+            Problem::refused(
+                "angle",
+                "the withdrawal angle is above 0 and at most 360 degrees",
+                "180 for a straight face, 360 for a free-standing tower, 90 in a corner",
+            )
+            .at(at("angle")),
         );
     }
     if let Some(leak) = &o.leakage {
         not_negative(Some(leak.flow_m3s), at("leakage.flow"), "leakage.flow", problems);
         positive(Some(leak.head_m), at("leakage.head"), "leakage.head", problems);
-        if leak.range_m3s.is_some_and(|(low, high)| low < 0.0 || low > leak.flow_m3s || high < leak.flow_m3s) {
+        if leak.range_m3s.is_some_and(|(low, high)| low < 0.0 || low > leak.flow_m3s || high < leak.flow_m3s)
+        {
             problems.push(
-                Problem::refused("leak-range", "the leakage range does not hold its flow", "give [least, most] around leakage.flow")
-                    .at(at("leakage.range")),
+                Problem::refused(
+                    "leak-range",
+                    "the leakage range does not hold its flow",
+                    "give [least, most] around leakage.flow",
+                )
+                .at(at("leakage.range")),
             );
         }
     }
@@ -305,7 +350,12 @@ fn outlet(
         Some("crest") => true,
         Some(other) => {
             problems.push(
-                Problem::refused("kind", format!("`{other}` is not a kind of outlet"), "use `orifice` or `crest`").at(at("kind")),
+                Problem::refused(
+                    "kind",
+                    format!("`{other}` is not a kind of outlet"),
+                    "use `orifice` or `crest`",
+                )
+                .at(at("kind")),
             );
             return None;
         }
@@ -360,7 +410,11 @@ fn orifice_kind(o: &RawOutlet, i: usize, problems: &mut Vec<Problem>) -> Option<
     match (o.height_m, o.width_m, o.diameter_m) {
         (Some(height_m), Some(width_m), None) => Some(Kind::Orifice(Shape::Rectangle { height_m, width_m })),
         (None, None, Some(diameter_m)) => Some(Kind::Orifice(Shape::Circle { diameter_m })),
-        (_, _, Some(_)) => refuse("diameter", "both a diameter and a height or width", "give a diameter, or height and width"),
+        (_, _, Some(_)) => refuse(
+            "diameter",
+            "both a diameter and a height or width",
+            "give a diameter, or height and width",
+        ),
         (None, _, None) => refuse("height", "height is missing", "give height and width, or a diameter"),
         (_, None, None) => refuse("width", "width is missing", "give height and width, or a diameter"),
     }
@@ -370,17 +424,30 @@ fn crest_kind(o: &RawOutlet, i: usize, problems: &mut Vec<Problem>) -> Option<Ki
     let at = |key: &str| format!("outlets[{i}].{key}");
     if o.diameter_m.is_some() || o.height_m.is_some() {
         problems.push(
-            Problem::refused("shape", "a crest has neither height nor diameter", "give its length as `width`").at(at("kind")),
+            Problem::refused(
+                "shape",
+                "a crest has neither height nor diameter",
+                "give its length as `width`",
+            )
+            .at(at("kind")),
         );
     }
     let rises = o.rating.windows(2).all(|w| w[1].0 > w[0].0 && w[1].1 >= w[0].1);
     if !rises || o.rating.len() == 1 {
         problems.push(
-            Problem::refused("rating", "the rating needs two or more rows [head, flow] that rise", "order them by head").at(at("rating")),
+            Problem::refused(
+                "rating",
+                "the rating needs two or more rows [head, flow] that rise",
+                "order them by head",
+            )
+            .at(at("rating")),
         );
     }
     let Some(length_m) = o.width_m else {
-        problems.push(Problem::refused("shape", "width is missing", "give the crest's length as `width`").at(at("width")));
+        problems.push(
+            Problem::refused("shape", "width is missing", "give the crest's length as `width`")
+                .at(at("width")),
+        );
         return None;
     };
     Some(Kind::Crest { length_m, gated: o.gated.unwrap_or(false), rating: o.rating.clone() })
@@ -391,18 +458,32 @@ fn positions(o: &RawOutlet, i: usize, crest: bool, problems: &mut Vec<Problem>) 
         let path = format!("outlets[{i}].positions[{k}]");
         if !(0.0..=1.0).contains(&p.opening) {
             problems.push(
-                Problem::refused("position", format!("position `{}` lies outside 0 to 100 %", p.name), "give percent of the full height")
-                    .at(path.clone()),
+                Problem::refused(
+                    "position",
+                    format!("position `{}` lies outside 0 to 100 %", p.name),
+                    "give percent of the full height",
+                )
+                .at(path.clone()),
             );
         }
         if p.crest_m.is_some() && !crest {
             problems.push(
-                Problem::refused("position", "a position with a crest needs an outlet of `kind: crest`", "add `kind: crest`").at(path.clone()),
+                Problem::refused(
+                    "position",
+                    "a position with a crest needs an outlet of `kind: crest`",
+                    "add `kind: crest`",
+                )
+                .at(path.clone()),
             );
         }
         if o.positions[..k].iter().any(|q| q.name == p.name) {
             problems.push(
-                Problem::refused("position", format!("position `{}` stands twice", p.name), "list each position once").at(path),
+                Problem::refused(
+                    "position",
+                    format!("position `{}` stands twice", p.name),
+                    "list each position once",
+                )
+                .at(path),
             );
         }
     }
@@ -426,8 +507,12 @@ fn mixed_losses(raw: &Raw, problems: &mut Vec<Problem>) {
         }
         if ports.is_empty() {
             problems.push(
-                Problem::flag("empty-well", format!("no outlet stands on well `{name}`"), "name it in an outlet's `well`")
-                    .at(format!("wells[{i}]")),
+                Problem::flag(
+                    "empty-well",
+                    format!("no outlet stands on well `{name}`"),
+                    "name it in an outlet's `well`",
+                )
+                .at(format!("wells[{i}]")),
             );
         }
     }
@@ -441,8 +526,12 @@ fn target(t: &RawTarget, i: usize, problems: &mut Vec<Problem>) -> Option<Target
             let day = YearDay::parse(text);
             if day.is_none() {
                 problems.push(
-                    Problem::refused("date", format!("`{text}` is not a day of the year"), "write month-day, such as 05-01")
-                        .at(format!("{path}.{key}")),
+                    Problem::refused(
+                        "date",
+                        format!("`{text}` is not a day of the year"),
+                        "write month-day, such as 05-01",
+                    )
+                    .at(format!("{path}.{key}")),
                 );
             }
             day
@@ -457,8 +546,12 @@ fn target(t: &RawTarget, i: usize, problems: &mut Vec<Problem>) -> Option<Target
             if found.is_none() {
                 let known: Vec<&str> = Statistic::NAMES.iter().map(|(n, _)| *n).collect();
                 problems.push(
-                    Problem::refused("statistic", format!("`{name}` is not a statistic"), format!("use one of {}", known.join(", ")))
-                        .at(format!("{path}.statistic")),
+                    Problem::refused(
+                        "statistic",
+                        format!("`{name}` is not a statistic"),
+                        format!("use one of {}", known.join(", ")),
+                    )
+                    .at(format!("{path}.statistic")),
                 );
             }
             found
@@ -493,7 +586,12 @@ fn now(raw: &Raw, outlets: &[Option<Outlet>], problems: &mut Vec<Problem>) -> Ve
         let path = format!("now.{name}");
         let Some(index) = raw.outlets.iter().position(|o| o.name.as_deref() == Some(name)) else {
             problems.push(
-                Problem::refused("unknown-outlet", format!("no outlet is named `{name}`"), "correct the name").at(path),
+                Problem::refused(
+                    "unknown-outlet",
+                    format!("no outlet is named `{name}`"),
+                    "correct the name",
+                )
+                .at(path),
             );
             continue;
         };
@@ -507,8 +605,12 @@ fn now(raw: &Raw, outlets: &[Option<Outlet>], problems: &mut Vec<Problem>) -> Ve
                 });
                 if !(0.0..=1.0).contains(share) || !stands {
                     problems.push(
-                        Problem::refused("position", format!("`{name}` has no position {:.0} %", share * 100.0), "use one of its positions")
-                            .at(path),
+                        Problem::refused(
+                            "position",
+                            format!("`{name}` has no position {:.0} %", share * 100.0),
+                            "use one of its positions",
+                        )
+                        .at(path),
                     );
                 }
                 out.push((index, *set));
@@ -523,9 +625,8 @@ fn now(raw: &Raw, outlets: &[Option<Outlet>], problems: &mut Vec<Problem>) -> Ve
 fn spread(raw: &Raw, problems: &mut Vec<Problem>) {
     let b = &raw.band;
     if !(10..=10_000).contains(&b.members) {
-        problems.push(
-            Problem::refused("band", "members must be 10 to 10000", "200 serves").at("band.members"),
-        );
+        problems
+            .push(Problem::refused("band", "members must be 10 to 10000", "200 serves").at("band.members"));
     }
     let spreads = [
         (b.cast_c, "cast"),
@@ -542,18 +643,32 @@ fn spread(raw: &Raw, problems: &mut Vec<Problem>) {
     }
     if b.zone_low <= 0.0 || b.zone_low > 1.0 || b.zone_high < 1.0 {
         problems.push(
-            Problem::refused("band", "the zone factor's range must hold 1", "the default is [0.70, 1.15]").at("band.zone"),
+            Problem::refused("band", "the zone factor's range must hold 1", "the default is [0.70, 1.15]")
+                .at("band.zone"),
         );
     }
     let c = &raw.checks;
-    for (value, key) in [(c.gap_m, "gap"), (c.extrapolate_m, "extrapolate"), (c.spike_c, "spike"), (c.spike_mg_l, "spike_oxygen"), (c.oxygen_share, "oxygen_percent"), (c.stale_days, "stale_days"), (c.ageing_days, "ageing_days"), (c.heat_w_m2, "heat")] {
+    for (value, key) in [
+        (c.gap_m, "gap"),
+        (c.extrapolate_m, "extrapolate"),
+        (c.spike_c, "spike"),
+        (c.spike_mg_l, "spike_oxygen"),
+        (c.oxygen_share, "oxygen_percent"),
+        (c.stale_days, "stale_days"),
+        (c.ageing_days, "ageing_days"),
+        (c.heat_w_m2, "heat"),
+    ] {
         positive(Some(value), format!("checks.{key}"), key, problems);
     }
     positive(Some(raw.water.tds_per_us_cm), "water.tds_factor".into(), "tds_factor", problems);
     if raw.water.solids_kg_m3 <= 1000.0 {
         problems.push(
-            Problem::refused("solids", "suspended solids must be denser than water", "2650 kg/m3 serves for mineral silt")
-                .at("water.solids_density"),
+            Problem::refused(
+                "solids",
+                "suspended solids must be denser than water",
+                "2650 kg/m3 serves for mineral silt",
+            )
+            .at("water.solids_density"),
         );
     }
 }

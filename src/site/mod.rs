@@ -71,7 +71,10 @@ pub struct Chemistry {
 
 impl Default for Chemistry {
     fn default() -> Self {
-        Self { tds_per_us_cm: crate::water::TDS_PER_US_CM, solids_kg_m3: crate::water::SOLIDS_KG_M3 }
+        Self {
+            tds_per_us_cm: crate::water::SOLIDS_PER_CONDUCTANCE,
+            solids_kg_m3: crate::water::SEDIMENT_DENSITY_KG_M3,
+        }
     }
 }
 

@@ -149,10 +149,7 @@ impl Pool {
                 refuse(
                     "pool.table[0]".into(),
                     "table-span",
-                    format!(
-                        "the table begins at {:.2} m, above the bed {bed_m:.2} m",
-                        first.elevation_m
-                    ),
+                    format!("the table begins at {:.2} m, above the bed {bed_m:.2} m", first.elevation_m),
                     "let the first row stand at the bed (its area and volume may be 0)",
                 );
             }
@@ -172,8 +169,7 @@ impl Pool {
         let mut integral = 0.0;
         for (i, raw) in table.iter().enumerate() {
             if let (Some(previous), true) = (rows.last(), i > 0) {
-                let step =
-                    (raw.elevation_m - previous.elevation_m) * 0.5 * (raw.area_m2 + previous.area_m2);
+                let step = (raw.elevation_m - previous.elevation_m) * 0.5 * (raw.area_m2 + previous.area_m2);
                 integral += step;
                 if let Some(volume) = raw.volume_m3 {
                     let told = volume - previous.volume_m3;
@@ -215,8 +211,12 @@ impl Pool {
         }
         if rows.windows(2).any(|w| w[1].area_m2 <= 0.0) {
             problems.push(
-                Problem::refused("table-empty", "the pool table holds no area above its first row", "give areas")
-                    .at("pool.table"),
+                Problem::refused(
+                    "table-empty",
+                    "the pool table holds no area above its first row",
+                    "give areas",
+                )
+                .at("pool.table"),
             );
             return None;
         }

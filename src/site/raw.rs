@@ -2,7 +2,9 @@
 
 use crate::units::Folder;
 
-use super::{BandInputs, CastChecks, Chemistry, Leakage, ListedCast, Opens, Position, RawRow, SetNow, WidthSource};
+use super::{
+    BandInputs, CastChecks, Chemistry, Leakage, ListedCast, Opens, Position, RawRow, SetNow, WidthSource,
+};
 
 /// Pool as read.
 #[derive(Debug, Clone, Default, PartialEq)]

@@ -1,0 +1,390 @@
+//! The column of water: temperature, solids and oxygen linear in elevation between samples, density
+//! computed from them where it is asked for, and levelled so that it never falls with depth.
+//!
+//! Everything that needs a limit or a shape asks the column; what is blended is taken from it as measured.
+
+use crate::water;
+
+use super::levelled::levelled;
+use super::slices::Slices;
+
+/// Water at one elevation.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Sample {
+    /// Elevation, m.
+    pub elevation_m: f64,
+    /// Temperature, C.
+    pub temperature_c: f64,
+    /// Dissolved solids, g/kg.
+    pub salt_g_per_kg: f64,
+    /// Suspended solids, mg/L.
+    pub suspended_mg_l: f64,
+}
+
+/// Oxygen at one elevation.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct OxygenSample {
+    /// Elevation, m.
+    pub elevation_m: f64,
+    /// Dissolved oxygen, mg/L.
+    pub oxygen_mg_l: f64,
+}
+
+/// How far oxygen may be carried beyond its last sample where samples stand closer, m (choice).
+pub const OXYGEN_CARRY_M: f64 = 2.0;
+/// Oxygen below this makes sulphide, iron and manganese likely, mg/L (common practice, no source).
+pub const OXYGEN_LOW_MG_L: f64 = 1.0;
+/// Nodes closer than this are one, m.
+const SAME_M: f64 = 1e-9;
+
+/// Width of the pool as a function of elevation: the elevations where it bends, and the function.
+pub struct Widths<'a> {
+    /// Where the width bends, rising, m.
+    pub nodes_m: Vec<f64>,
+    /// Width at an elevation, any constant factor.
+    pub at: &'a dyn Fn(f64) -> f64,
+}
+
+/// What a column is made of.
+pub struct Source<'a> {
+    /// Bed at the dam, m.
+    pub bed_m: f64,
+    /// Water surface, m.
+    pub surface_m: f64,
+    /// Samples, rising, no two at one elevation, at least one.
+    pub samples: &'a [Sample],
+    /// Oxygen samples, rising; empty where none was measured.
+    pub oxygen: &'a [OxygenSample],
+    /// Density of suspended solids, kg/m3.
+    pub solids_kg_m3: f64,
+    /// Widths, where the site gives them.
+    pub widths: Option<Widths<'a>>,
+}
+
+/// One stretch between two neighbouring nodes.
+#[derive(Debug, Clone, Copy)]
+pub(super) struct Segment {
+    pub(super) z: [f64; 2],
+    pub(super) temperature: [f64; 2],
+    pub(super) salt: [f64; 2],
+    pub(super) suspended: [f64; 2],
+    pub(super) oxygen: [f64; 2],
+    pub(super) width: [f64; 2],
+    /// Levelled density is `shift + scale * measured`.
+    shift: f64,
+    scale: f64,
+    /// Measured density at both ends, where it was given rather than computed.
+    given: Option<[f64; 2]>,
+    /// No oxygen reading reaches here.
+    pub(super) oxygen_missing: bool,
+    solids_kg_m3: f64,
+}
+
+impl Segment {
+    fn share(&self, z: f64) -> f64 {
+        (z - self.z[0]) / (self.z[1] - self.z[0])
+    }
+
+    #[inline]
+    fn density(&self, z: f64) -> f64 {
+        if self.scale == 0.0 {
+            return self.shift;
+        }
+        let t = self.share(z);
+        let raw = match self.given {
+            Some(given) => lerp(given, t),
+            None => water::density_kg_m3(
+                lerp(self.temperature, t),
+                lerp(self.salt, t),
+                lerp(self.suspended, t),
+                self.solids_kg_m3,
+            ),
+        };
+        self.shift + self.scale * raw
+    }
+}
+
+#[inline]
+fn lerp(ends: [f64; 2], t: f64) -> f64 {
+    ends[0] + t * (ends[1] - ends[0])
+}
+
+/// The column, ready to be asked.
+#[derive(Debug, Clone)]
+pub struct Column {
+    bed_m: f64,
+    surface_m: f64,
+    nodes_m: Vec<f64>,
+    density: Vec<f64>,
+    segments: Vec<Segment>,
+    slices: Slices,
+    has_oxygen: bool,
+    has_width: bool,
+}
+
+/// A reading of the column at one elevation, as measured.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Reading {
+    /// Temperature, C.
+    pub temperature_c: f64,
+    /// Dissolved solids, g/kg.
+    pub salt_g_per_kg: f64,
+    /// Suspended solids, mg/L.
+    pub suspended_mg_l: f64,
+    /// Dissolved oxygen, mg/L; `None` where no reading reaches.
+    pub oxygen_mg_l: Option<f64>,
+}
+
+impl Column {
+    /// Builds the column. `None` when there is no sample or no water between bed and surface.
+    pub fn new(source: &Source) -> Option<Self> {
+        Self::build(source, None)
+    }
+
+    /// A column whose density is given at the samples and linear between them, kg/m3; temperature and
+    /// oxygen are then mere tracers. For worked cases and for members of a group computed as given.
+    pub fn given(source: &Source, density_kg_m3: &[f64]) -> Option<Self> {
+        Self::build(source, Some(density_kg_m3))
+    }
+
+    fn build(source: &Source, given: Option<&[f64]>) -> Option<Self> {
+        let &Source { bed_m, surface_m, samples, oxygen, solids_kg_m3, .. } = source;
+        if samples.is_empty() || surface_m <= bed_m || given.is_some_and(|g| g.len() != samples.len()) {
+            return None;
+        }
+        // stage one: the nodes density needs
+        let mut nodes = vec![bed_m, surface_m];
+        nodes.extend(samples.iter().map(|s| s.elevation_m));
+        if given.is_none() {
+            nodes.extend(samples.windows(2).filter_map(|w| greatest_density_between(&w[0], &w[1])));
+        }
+        tidy(&mut nodes, bed_m, surface_m);
+        let measured: Vec<f64> = nodes
+            .iter()
+            .map(|&z| {
+                if let Some(given) = given {
+                    return interpolate(samples, z, |i| given[i]);
+                }
+                let s = sample_at(samples, z);
+                water::density_kg_m3(s.temperature_c, s.salt_g_per_kg, s.suspended_mg_l, solids_kg_m3)
+            })
+            .collect();
+        let level = levelled(&nodes, &measured);
+        // stage two: the nodes where a tracer or the width bends
+        let mut all = nodes.clone();
+        let reach = oxygen_reach(oxygen);
+        all.extend(oxygen.iter().map(|o| o.elevation_m));
+        all.extend(oxygen.windows(2).filter_map(|w| crossing(w, OXYGEN_LOW_MG_L)));
+        if let Some((low, high)) = reach {
+            all.extend([low, high]);
+        }
+        if let Some(widths) = &source.widths {
+            all.extend_from_slice(&widths.nodes_m);
+        }
+        tidy(&mut all, bed_m, surface_m);
+        let mut segments = Vec::with_capacity(all.len() - 1);
+        let mut k = 0;
+        for ends in all.windows(2) {
+            let middle = 0.5 * (ends[0] + ends[1]);
+            while k + 2 < nodes.len() && nodes[k + 1] <= middle {
+                k += 1;
+            }
+            let (scale, shift) = level_map([measured[k], measured[k + 1]], [level[k], level[k + 1]]);
+            let [low, high] = [sample_at(samples, ends[0]), sample_at(samples, ends[1])];
+            segments.push(Segment {
+                z: [ends[0], ends[1]],
+                temperature: [low.temperature_c, high.temperature_c],
+                salt: [low.salt_g_per_kg, high.salt_g_per_kg],
+                suspended: [low.suspended_mg_l, high.suspended_mg_l],
+                oxygen: [oxygen_at(oxygen, ends[0]), oxygen_at(oxygen, ends[1])],
+                width: source.widths.as_ref().map_or([1.0, 1.0], |w| [(w.at)(ends[0]), (w.at)(ends[1])]),
+                shift,
+                scale,
+                given: given.map(|g| {
+                    [interpolate(samples, ends[0], |i| g[i]), interpolate(samples, ends[1], |i| g[i])]
+                }),
+                oxygen_missing: reach.is_none_or(|(low, high)| middle < low || middle > high),
+                solids_kg_m3,
+            });
+        }
+        let mut density: Vec<f64> = segments.iter().map(|s| s.density(s.z[0])).collect();
+        density.push(segments.last().map(|s| s.density(s.z[1]))?);
+        // round-off of the map must not undo the levelling
+        for i in 1..density.len() {
+            density[i] = density[i].min(density[i - 1]);
+        }
+        let slices = Slices::new(&segments, surface_m - bed_m, Segment::density);
+        Some(Self {
+            bed_m,
+            surface_m,
+            nodes_m: all,
+            density,
+            segments,
+            slices,
+            has_oxygen: !oxygen.is_empty(),
+            has_width: source.widths.is_some(),
+        })
+    }
+
+    /// Bed, m.
+    pub fn bed_m(&self) -> f64 {
+        self.bed_m
+    }
+
+    /// Water surface, m.
+    pub fn surface_m(&self) -> f64 {
+        self.surface_m
+    }
+
+    /// Elevations between which everything is smooth, rising from bed to surface, m.
+    pub fn nodes_m(&self) -> &[f64] {
+        &self.nodes_m
+    }
+
+    /// Levelled density at the nodes, kg/m3; never rises upward.
+    pub fn node_density_kg_m3(&self) -> &[f64] {
+        &self.density
+    }
+
+    /// Whether any oxygen was measured.
+    pub fn has_oxygen(&self) -> bool {
+        self.has_oxygen
+    }
+
+    /// Whether the site gives widths.
+    pub fn has_width(&self) -> bool {
+        self.has_width
+    }
+
+    /// Slices for integrals.
+    pub fn slices(&self) -> &Slices {
+        &self.slices
+    }
+
+    fn segment(&self, z: f64) -> &Segment {
+        let i = self.nodes_m.partition_point(|&n| n <= z).clamp(1, self.segments.len());
+        &self.segments[i - 1]
+    }
+
+    /// Levelled density at an elevation, kg/m3; held beyond bed and surface.
+    pub fn density_kg_m3(&self, z: f64) -> f64 {
+        let z = z.clamp(self.bed_m, self.surface_m);
+        self.segment(z).density(z)
+    }
+
+    /// Levelled density inside the stretch between node `i` and node `i + 1`, kg/m3.
+    #[inline]
+    pub fn density_in(&self, i: usize, z: f64) -> f64 {
+        self.segments[i].density(z)
+    }
+
+    /// What was measured at an elevation.
+    pub fn reading(&self, z: f64) -> Reading {
+        self.point(z).2
+    }
+
+    /// Levelled density (kg/m3), width (any constant factor; 1 without widths) and reading at an elevation.
+    pub fn point(&self, z: f64) -> (f64, f64, Reading) {
+        let z = z.clamp(self.bed_m, self.surface_m);
+        let s = self.segment(z);
+        let t = s.share(z);
+        let reading = Reading {
+            temperature_c: lerp(s.temperature, t),
+            salt_g_per_kg: lerp(s.salt, t),
+            suspended_mg_l: lerp(s.suspended, t),
+            oxygen_mg_l: (!s.oxygen_missing).then(|| lerp(s.oxygen, t)),
+        };
+        (s.density(z), lerp(s.width, t), reading)
+    }
+}
+
+/// Slope and intercept that carry measured density of a stretch onto the levelled one. A stretch whose ends
+/// were pooled together is flat; one whose ends were pooled apart still falls upward, so the slope exists.
+fn level_map(measured: [f64; 2], level: [f64; 2]) -> (f64, f64) {
+    let (fall, kept) = (measured[0] - measured[1], level[0] - level[1]);
+    if kept <= 0.0 || fall <= 0.0 {
+        (0.0, level[0])
+    } else {
+        let scale = kept / fall;
+        (scale, level[0] - scale * measured[0])
+    }
+}
+
+fn tidy(nodes: &mut Vec<f64>, bed_m: f64, surface_m: f64) {
+    nodes.retain(|z| (bed_m..=surface_m).contains(z));
+    nodes.sort_by(f64::total_cmp);
+    nodes.dedup_by(|a, b| (*a - *b).abs() < SAME_M);
+    // the surface itself must survive a sample just below it
+    if let Some(last) = nodes.last_mut() {
+        *last = surface_m;
+    }
+}
+
+/// Linear between neighbours, held beyond the ends.
+fn interpolate(samples: &[Sample], z: f64, value: impl Fn(usize) -> f64) -> f64 {
+    let i = samples.partition_point(|s| s.elevation_m <= z);
+    if i == 0 {
+        return value(0);
+    }
+    if i == samples.len() {
+        return value(i - 1);
+    }
+    let (a, b) = (samples[i - 1].elevation_m, samples[i].elevation_m);
+    lerp([value(i - 1), value(i)], (z - a) / (b - a))
+}
+
+fn sample_at(samples: &[Sample], z: f64) -> Sample {
+    Sample {
+        elevation_m: z,
+        temperature_c: interpolate(samples, z, |i| samples[i].temperature_c),
+        salt_g_per_kg: interpolate(samples, z, |i| samples[i].salt_g_per_kg),
+        suspended_mg_l: interpolate(samples, z, |i| samples[i].suspended_mg_l),
+    }
+}
+
+/// Elevation between two samples at which temperature is that of greatest density.
+fn greatest_density_between(a: &Sample, b: &Sample) -> Option<f64> {
+    let warmest = a.temperature_c.max(b.temperature_c);
+    let coldest = a.temperature_c.min(b.temperature_c);
+    // fresh water is densest at 3.98 C; salt only lowers that, so warmer stretches need no search
+    if coldest > 4.0 || warmest < 0.0 {
+        return None;
+    }
+    let densest = water::temperature_of_greatest_density_c(0.5 * (a.salt_g_per_kg + b.salt_g_per_kg));
+    if !(coldest < densest && densest < warmest) {
+        return None;
+    }
+    let t = (densest - a.temperature_c) / (b.temperature_c - a.temperature_c);
+    Some(a.elevation_m + t * (b.elevation_m - a.elevation_m))
+}
+
+fn crossing(pair: &[OxygenSample], level: f64) -> Option<f64> {
+    let (a, b) = (&pair[0], &pair[1]);
+    let (fa, fb) = (a.oxygen_mg_l - level, b.oxygen_mg_l - level);
+    (fa * fb < 0.0).then(|| a.elevation_m + (b.elevation_m - a.elevation_m) * fa / (fa - fb))
+}
+
+/// From where to where oxygen readings reach: one sample spacing, or [`OXYGEN_CARRY_M`] where that is
+/// more, beyond the last sample on either side.
+fn oxygen_reach(oxygen: &[OxygenSample]) -> Option<(f64, f64)> {
+    let (first, last) = (oxygen.first()?, oxygen.last()?);
+    let spacing = |pair: Option<&[OxygenSample]>| {
+        pair.map_or(0.0, |p| p[1].elevation_m - p[0].elevation_m).max(OXYGEN_CARRY_M)
+    };
+    Some((
+        first.elevation_m - spacing(oxygen.windows(2).next()),
+        last.elevation_m + spacing(oxygen.windows(2).last()),
+    ))
+}
+
+fn oxygen_at(oxygen: &[OxygenSample], z: f64) -> f64 {
+    let i = oxygen.partition_point(|o| o.elevation_m <= z);
+    match (i.checked_sub(1).and_then(|k| oxygen.get(k)), oxygen.get(i)) {
+        (Some(a), Some(b)) => {
+            lerp([a.oxygen_mg_l, b.oxygen_mg_l], (z - a.elevation_m) / (b.elevation_m - a.elevation_m))
+        }
+        (Some(a), None) | (None, Some(a)) => a.oxygen_mg_l,
+        // never read: such stretches are marked missing
+        (None, None) => 0.0,
+    }
+}

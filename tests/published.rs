@@ -1,0 +1,4 @@
+//! Published values.
+
+#[path = "published/withdrawal.rs"]
+mod withdrawal;
