@@ -9,6 +9,9 @@ mod parse;
 mod show;
 mod unit;
 
+#[cfg(test)]
+mod tests;
+
 pub use datum::{Datum, DatumError};
 pub use folder::Folder;
 pub use parse::{UnitError, parse};

@@ -1,0 +1,6 @@
+//! Values printed by others, or computed by named general-purpose libraries, against this program.
+//! The numbers stand in `tests/data/*.csv`, with where they come from.
+
+mod table;
+mod units;
+mod water;
