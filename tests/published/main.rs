@@ -4,3 +4,4 @@
 mod table;
 mod units;
 mod water;
+mod withdrawal;
