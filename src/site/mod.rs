@@ -221,4 +221,9 @@ impl Site {
     pub fn outlet(&self, name: &str) -> Option<usize> {
         self.outlets.iter().position(|o| o.name == name)
     }
+
+    /// Air pressure at the water surface, atm; at sea level where the altitude is not known.
+    pub fn surface_pressure_atm(&self, pool_m: f64) -> f64 {
+        self.place.altitude_m.map_or(1.0, |altitude| crate::water::pressure_atm(altitude + pool_m))
+    }
 }

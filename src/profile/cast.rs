@@ -1,0 +1,548 @@
+//! From the rows of a cast to a profile held against its site.
+//!
+//! Readings become SI, depths become elevations, rows are put in order and rows at one elevation pooled; each
+//! of these is said in a note or flag with its line, and nothing else is changed.
+
+use chrono::{DateTime, FixedOffset};
+
+use crate::problem::{Problem, any_refused};
+use crate::site::Site;
+use crate::water;
+
+use super::column::{Column, OxygenSample, Sample, Source, Widths};
+use super::quality;
+
+/// One row as read, in SI, with the line it stands on. Absent readings are `None`.
+#[derive(Debug, Clone, Copy, Default, PartialEq)]
+pub struct RawRow {
+    /// Line in the file, from 1.
+    pub line: usize,
+    /// Depth below the surface, m.
+    pub depth_m: Option<f64>,
+    /// Elevation, m.
+    pub elevation_m: Option<f64>,
+    /// Temperature, C.
+    pub temperature_c: Option<f64>,
+    /// Oxygen, mg/L.
+    pub oxygen_mg_l: Option<f64>,
+    /// Oxygen, percent of saturation.
+    pub oxygen_percent: Option<f64>,
+    /// Conductance at 25 C, uS/cm.
+    pub specific_us_cm: Option<f64>,
+    /// Conductivity at the temperature of the water, uS/cm.
+    pub conductivity_us_cm: Option<f64>,
+    /// Dissolved solids, mg/L.
+    pub solids_mg_l: Option<f64>,
+    /// Suspended solids, mg/L.
+    pub suspended_mg_l: Option<f64>,
+}
+
+/// A cast as read.
+#[derive(Debug, Clone, Default, PartialEq)]
+pub struct Raw {
+    /// File as the user named it.
+    pub file: String,
+    /// When it was taken.
+    pub taken: Option<DateTime<FixedOffset>>,
+    /// Pool elevation then, m.
+    pub pool_m: Option<f64>,
+    /// Rows in the order of the file.
+    pub rows: Vec<RawRow>,
+}
+
+/// A cast held against its site, ready to be asked.
+#[derive(Debug, Clone)]
+pub struct Profile {
+    /// File as the user named it.
+    pub file: String,
+    /// When it was taken.
+    pub taken: Option<DateTime<FixedOffset>>,
+    /// Water surface, m.
+    pub pool_m: f64,
+    /// Samples, rising.
+    pub samples: Vec<Sample>,
+    /// Line of the file each sample stands on.
+    pub lines: Vec<usize>,
+    /// Oxygen samples, rising.
+    pub oxygen: Vec<OxygenSample>,
+    /// Whether solids were measured.
+    pub has_solids: bool,
+    /// The column built from them.
+    pub column: Column,
+    /// Whether an inversion was large enough to double the band.
+    pub large_inversion: bool,
+    /// Flags and notes in the order of the file.
+    pub flags: Vec<Problem>,
+}
+
+/// Samples up to this far above the pool count as at the surface, m.
+pub const ABOVE_SURFACE_M: f64 = 0.1;
+/// Water outside this range cannot be, C.
+pub const WATER_C: std::ops::RangeInclusive<f64> = -1.0..=45.0;
+/// Samples closer than this are one elevation, m.
+const SAME_ELEVATION_M: f64 = 0.005;
+/// Surface water denser than bed water by more than this is an upside-down profile, kg/m3.
+const UPSIDE_DOWN_KG_M3: f64 = 0.5;
+
+impl Profile {
+    /// Builds the profile of a cast. `pool_m` stands for the cast's own pool where the cast has none.
+    ///
+    /// The list holds every refusal, flag and note; `None` when any refuses.
+    pub fn build(raw: &Raw, site: &Site, pool_m: Option<f64>) -> (Option<Self>, Vec<Problem>) {
+        let mut problems = Vec::new();
+        let profile = build(raw, site, pool_m, &mut problems);
+        for p in &mut problems {
+            p.place.file.get_or_insert_with(|| raw.file.clone());
+        }
+        if any_refused(&problems) {
+            return (None, problems);
+        }
+        let profile = profile.map(|mut p| {
+            p.flags.clone_from(&problems);
+            p
+        });
+        (profile, problems)
+    }
+
+    /// Age at a moment, days.
+    pub fn age_days(&self, on: DateTime<FixedOffset>) -> Option<f64> {
+        Some((on - self.taken?).num_seconds() as f64 / 86_400.0)
+    }
+
+    /// The same water with other samples: for a moved pool and for perturbed cases.
+    pub fn column_of(
+        site: &Site,
+        pool_m: f64,
+        samples: &[Sample],
+        oxygen: &[OxygenSample],
+    ) -> Option<Column> {
+        let width = |z: f64| site.pool.width(z).unwrap_or(1.0);
+        let widths = site
+            .pool
+            .width(site.pool.bed_m)
+            .map(|_| Widths { nodes_m: site.pool.nodes_m().collect(), at: &width });
+        Column::new(&Source {
+            bed_m: site.pool.bed_m,
+            surface_m: pool_m,
+            samples,
+            oxygen,
+            solids_kg_m3: site.water.solids_kg_m3,
+            widths,
+        })
+    }
+}
+
+/// One row placed: elevation, line and readings.
+#[derive(Debug, Clone, Copy)]
+struct Placed {
+    z: f64,
+    row: RawRow,
+}
+
+fn build(raw: &Raw, site: &Site, pool_m: Option<f64>, problems: &mut Vec<Problem>) -> Option<Profile> {
+    let Some(pool) = raw.pool_m.or(pool_m) else {
+        problems.push(Problem::refused(
+            "no-pool",
+            "the cast does not say the pool elevation",
+            "add a line `# pool: ELEVATION`, or give --pool",
+        ));
+        return None;
+    };
+    if !(site.pool.bed_m..=site.pool.top_m()).contains(&pool) || pool <= site.pool.bed_m {
+        problems.push(Problem::refused(
+            "pool-outside",
+            format!(
+                "pool {pool:.2} m lies outside the site's table ({:.2} to {:.2} m)",
+                site.pool.bed_m,
+                site.pool.top_m()
+            ),
+            "check the elevation, its unit and its datum",
+        ));
+        return None;
+    }
+    if pool > site.pool.full_m + 1e-9 {
+        problems.push(Problem::flag(
+            "pool-above-full",
+            format!("pool {pool:.2} m stands above full pool {:.2} m", site.pool.full_m),
+            "check the elevation if this is no flood",
+        ));
+    }
+    for row in &raw.rows {
+        possible(row, problems);
+    }
+    if any_refused(problems) {
+        return None;
+    }
+    let mut placed = place(raw, site, pool, problems)?;
+    order(&mut placed, problems);
+    let placed = pool_duplicates(&placed, problems);
+    finish(raw, site, pool, &placed, problems)
+}
+
+/// Refuses what water cannot be.
+fn possible(row: &RawRow, problems: &mut Vec<Problem>) {
+    if let Some(t) = row.temperature_c
+        && !WATER_C.contains(&t)
+    {
+        let cure = if (32.0..=113.0).contains(&t) {
+            "name the column temperature_F if these are Fahrenheit"
+        } else {
+            "blank the cell if the sensor failed"
+        };
+        problems.push(
+            Problem::refused("temperature-range", format!("water of {t:.2} C is outside -1 to 45 C"), cure)
+                .on_line(row.line),
+        );
+    }
+    let negative = [
+        (row.oxygen_mg_l, "oxygen"),
+        (row.oxygen_percent, "oxygen"),
+        (row.specific_us_cm, "conductance"),
+        (row.conductivity_us_cm, "conductivity"),
+        (row.solids_mg_l, "dissolved solids"),
+        (row.suspended_mg_l, "suspended solids"),
+    ];
+    for (value, what) in negative {
+        if value.is_some_and(|v| v < -0.5) {
+            problems.push(
+                Problem::refused(
+                    "negative",
+                    format!("{what} cannot be negative"),
+                    "blank the cell if the sensor failed",
+                )
+                .on_line(row.line),
+            );
+        }
+    }
+    if row.oxygen_mg_l.is_some_and(|o| o > 40.0) {
+        problems.push(
+            Problem::refused(
+                "oxygen-range",
+                "oxygen above 40 mg/L is not water's",
+                "name the column oxygen_percent if these are percent of saturation",
+            )
+            .on_line(row.line),
+        );
+    }
+}
+
+/// Gives each row its elevation; leaves out rows above the water, with a flag.
+fn place(raw: &Raw, site: &Site, pool: f64, problems: &mut Vec<Problem>) -> Option<Vec<Placed>> {
+    let mut placed: Vec<Placed> = Vec::with_capacity(raw.rows.len());
+    for row in &raw.rows {
+        let z = match (row.elevation_m, row.depth_m) {
+            (Some(z), _) => z,
+            (None, Some(depth)) => pool - depth,
+            (None, None) => continue,
+        };
+        if row.temperature_c.is_some() || row.oxygen_mg_l.is_some() || row.oxygen_percent.is_some() {
+            placed.push(Placed { z, row: *row });
+        }
+    }
+    let wholly_outside = !placed.is_empty()
+        && placed.iter().all(|p| p.z < site.pool.bed_m || p.z > site.pool.top_m() + ABOVE_SURFACE_M);
+    if wholly_outside {
+        let depths = raw.rows.iter().any(|r| r.elevation_m.is_some());
+        problems.push(Problem::refused(
+            "elevations-outside",
+            format!(
+                "every sample lies outside bed to top of the pool table ({:.2} to {:.2} m)",
+                site.pool.bed_m,
+                site.pool.top_m()
+            ),
+            if depths {
+                "name the column depth_m or depth_ft if these are depths"
+            } else {
+                "check depths and units"
+            },
+        ));
+        return None;
+    }
+    let (kept, above): (Vec<Placed>, Vec<Placed>) =
+        placed.into_iter().partition(|p| p.z <= pool + ABOVE_SURFACE_M);
+    if let Some(first) = above.first() {
+        let highest = above.iter().map(|p| p.z).fold(first.z, f64::max);
+        problems.push(
+            Problem::flag(
+                "exposed",
+                format!(
+                    "{} sample(s) above the water (highest {:.2} m above the pool) left out",
+                    above.len(),
+                    highest - pool
+                ),
+                "check depths and the pool elevation; a sensor may hang in the air",
+            )
+            .on_line(first.row.line),
+        );
+    }
+    let below: Vec<&Placed> = kept.iter().filter(|p| p.z < site.pool.bed_m - ABOVE_SURFACE_M).collect();
+    if let Some(first) = below.first() {
+        let deepest = below.iter().map(|p| p.z).fold(first.z, f64::min);
+        problems.push(
+            Problem::flag(
+                "below-bed",
+                format!(
+                    "{} sample(s) below the bed (lowest by {:.2} m)",
+                    below.len(),
+                    site.pool.bed_m - deepest
+                ),
+                "check depths, the pool elevation and the bed of the site file",
+            )
+            .on_line(first.row.line),
+        );
+    }
+    let kept: Vec<Placed> = kept.into_iter().map(|p| Placed { z: p.z.min(pool), ..p }).collect();
+    let usable = kept.iter().filter(|p| p.row.temperature_c.is_some()).count();
+    if usable < 2 {
+        problems.push(Problem::refused(
+            "too-few",
+            format!("{usable} usable sample(s)"),
+            "a profile needs at least two depths with a temperature",
+        ));
+        return None;
+    }
+    Some(kept)
+}
+
+/// Puts the rows in order of elevation and says where the file turned round.
+fn order(placed: &mut [Placed], problems: &mut Vec<Problem>) {
+    let mut turns = Vec::new();
+    let mut way = 0.0;
+    for pair in placed.windows(2) {
+        let step = pair[1].z - pair[0].z;
+        if step.abs() > SAME_ELEVATION_M {
+            if way * step < 0.0 {
+                turns.push(pair[1].row.line);
+            }
+            way = step;
+        }
+    }
+    if let Some(&first) = turns.first() {
+        let words = if turns.len() == 1 {
+            "the cast turns round here: both ways are used, in order of depth".to_owned()
+        } else {
+            format!("rows out of order of depth ({} turns); put in order", turns.len())
+        };
+        problems
+            .push(Problem::flag("order", words, "split a down and an up cast into two files").on_line(first));
+    }
+    placed.sort_by(|a, b| a.z.total_cmp(&b.z).then(a.row.line.cmp(&b.row.line)));
+}
+
+/// Pools rows at one elevation into their mean and flags it.
+fn pool_duplicates(placed: &[Placed], problems: &mut Vec<Problem>) -> Vec<Placed> {
+    let mut out: Vec<Placed> = Vec::with_capacity(placed.len());
+    for group in placed.chunk_by(|a, b| (b.z - a.z).abs() < SAME_ELEVATION_M) {
+        let Some(first) = group.first() else { continue };
+        if group.len() > 1 {
+            let temperatures = || group.iter().filter_map(|p| p.row.temperature_c);
+            let spread = temperatures().fold(f64::NEG_INFINITY, f64::max)
+                - temperatures().fold(f64::INFINITY, f64::min);
+            let words = if spread.is_finite() {
+                format!("{} rows at one depth, {spread:.2} C apart; their mean is used", group.len())
+            } else {
+                format!("{} rows at one depth; their mean is used", group.len())
+            };
+            problems.push(
+                Problem::flag("duplicate", words, "keep one reading a depth if they should not be pooled")
+                    .on_line(first.row.line),
+            );
+        }
+        let mean = |read: &dyn Fn(&RawRow) -> Option<f64>| {
+            let values: Vec<f64> = group.iter().filter_map(|p| read(&p.row)).collect();
+            (!values.is_empty()).then(|| values.iter().sum::<f64>() / values.len() as f64)
+        };
+        out.push(Placed {
+            z: first.z,
+            row: RawRow {
+                line: first.row.line,
+                temperature_c: mean(&|r| r.temperature_c),
+                oxygen_mg_l: mean(&|r| r.oxygen_mg_l),
+                oxygen_percent: mean(&|r| r.oxygen_percent),
+                specific_us_cm: mean(&|r| r.specific_us_cm),
+                conductivity_us_cm: mean(&|r| r.conductivity_us_cm),
+                solids_mg_l: mean(&|r| r.solids_mg_l),
+                suspended_mg_l: mean(&|r| r.suspended_mg_l),
+                ..first.row
+            },
+        });
+    }
+    out
+}
+
+fn finish(
+    raw: &Raw,
+    site: &Site,
+    pool: f64,
+    placed: &[Placed],
+    problems: &mut Vec<Problem>,
+) -> Option<Profile> {
+    let warm: Vec<&Placed> = placed.iter().filter(|p| p.row.temperature_c.is_some()).collect();
+    let dissolved: Vec<Option<f64>> = warm.iter().map(|p| dissolved_mg_l(&p.row, site)).collect();
+    let suspended: Vec<Option<f64>> = warm.iter().map(|p| p.row.suspended_mg_l.map(|v| v.max(0.0))).collect();
+    let elevations: Vec<f64> = warm.iter().map(|p| p.z).collect();
+    let (dissolved, suspended) = (bridged(&elevations, &dissolved), bridged(&elevations, &suspended));
+    let samples: Vec<Sample> = warm
+        .iter()
+        .enumerate()
+        .filter_map(|(i, p)| {
+            let temperature_c = p.row.temperature_c?;
+            Some(Sample {
+                elevation_m: p.z,
+                temperature_c,
+                salt_g_per_kg: water::dissolved_g_per_kg(
+                    dissolved.as_ref().map_or(0.0, |d| d[i]),
+                    temperature_c,
+                ),
+                suspended_mg_l: suspended.as_ref().map_or(0.0, |s| s[i]),
+            })
+        })
+        .collect();
+    let oxygen = oxygen(placed, site, pool, &samples);
+    notes(raw, warm.len(), placed, site, problems);
+    let (Some(bottom), Some(top)) = (samples.first(), samples.last()) else { return None };
+    let density = |s: &Sample| {
+        water::density_kg_m3(s.temperature_c, s.salt_g_per_kg, s.suspended_mg_l, site.water.solids_kg_m3)
+    };
+    if density(top) > density(bottom) + UPSIDE_DOWN_KG_M3 {
+        problems.push(Problem::refused(
+            "upside-down",
+            format!(
+                "surface water ({:.2} C) is denser than bed water ({:.2} C) by {:.2} kg/m3",
+                top.temperature_c,
+                bottom.temperature_c,
+                density(top) - density(bottom)
+            ),
+            "depths and elevations may be exchanged in the header",
+        ));
+        return None;
+    }
+    let lines: Vec<usize> = warm.iter().map(|p| p.row.line).collect();
+    let oxygen_lines: Vec<usize> =
+        placed.iter().filter(|p| oxygen_of(&p.row).is_some()).map(|p| p.row.line).collect();
+    let found = quality::examine(site, pool, &samples, &lines, &oxygen, &oxygen_lines);
+    let column = Profile::column_of(site, pool, &samples, &oxygen)?;
+    problems.extend(found.flags);
+    Some(Profile {
+        file: raw.file.clone(),
+        taken: raw.taken,
+        pool_m: pool,
+        samples,
+        lines,
+        oxygen,
+        has_solids: dissolved.is_some() || suspended.is_some(),
+        column,
+        large_inversion: found.large_inversion,
+        flags: Vec::new(),
+    })
+}
+
+fn oxygen_of(row: &RawRow) -> Option<f64> {
+    row.oxygen_mg_l.or(row.oxygen_percent)
+}
+
+/// Oxygen samples; percent of saturation at the pressure of the water surface becomes mg/L.
+fn oxygen(placed: &[Placed], site: &Site, pool: f64, samples: &[Sample]) -> Vec<OxygenSample> {
+    let pressure = site.surface_pressure_atm(pool);
+    placed
+        .iter()
+        .filter_map(|p| {
+            let oxygen_mg_l = match (p.row.oxygen_mg_l, p.row.oxygen_percent) {
+                (Some(oxygen), _) => oxygen,
+                (None, Some(percent)) => {
+                    let near = samples
+                        .iter()
+                        .min_by(|a, b| (a.elevation_m - p.z).abs().total_cmp(&(b.elevation_m - p.z).abs()))?;
+                    let t = p.row.temperature_c.unwrap_or(near.temperature_c);
+                    water::oxygen_from_percent_mg_l(
+                        percent,
+                        water::saturation_mg_l(t, near.salt_g_per_kg, pressure),
+                    )
+                }
+                (None, None) => return None,
+            };
+            Some(OxygenSample { elevation_m: p.z, oxygen_mg_l: oxygen_mg_l.max(0.0) })
+        })
+        .collect()
+}
+
+/// Dissolved solids of a row, mg/L: as measured, else from conductance.
+fn dissolved_mg_l(row: &RawRow, site: &Site) -> Option<f64> {
+    if let Some(solids) = row.solids_mg_l {
+        return Some(solids.max(0.0));
+    }
+    let specific = row.specific_us_cm.or_else(|| {
+        Some(water::specific_conductance_us_cm(
+            row.conductivity_us_cm?,
+            row.temperature_c?,
+            water::CONDUCTIVITY_PER_C,
+        ))
+    })?;
+    Some(water::dissolved_from_conductance_mg_l(specific.max(0.0), site.water.tds_per_us_cm))
+}
+
+/// Absent values linear between their neighbours, held beyond; `None` when all are absent.
+fn bridged(z: &[f64], values: &[Option<f64>]) -> Option<Vec<f64>> {
+    let known: Vec<(f64, f64)> = z.iter().zip(values).filter_map(|(&z, v)| Some((z, (*v)?))).collect();
+    let (first, last) = (known.first()?, known.last()?);
+    let at = |z: f64| {
+        let i = known.partition_point(|k| k.0 <= z);
+        match (i.checked_sub(1).map(|k| known[k]), known.get(i)) {
+            (Some(a), Some(b)) => a.1 + (b.1 - a.1) * (z - a.0) / (b.0 - a.0),
+            (Some(_), None) => last.1,
+            (None, _) => first.1,
+        }
+    };
+    Some(z.iter().map(|&z| at(z)).collect())
+}
+
+/// Says what was converted or is absent.
+fn notes(raw: &Raw, with_temperature: usize, placed: &[Placed], site: &Site, problems: &mut Vec<Problem>) {
+    let has = |read: &dyn Fn(&RawRow) -> Option<f64>| placed.iter().any(|p| read(&p.row).is_some());
+    if with_temperature < placed.len() {
+        let first = placed.iter().find(|p| p.row.temperature_c.is_none());
+        let note = Problem::note(
+            "no-temperature",
+            format!("{} row(s) have no temperature", placed.len() - with_temperature),
+        );
+        problems.push(match first {
+            Some(p) => note.on_line(p.row.line),
+            None => note,
+        });
+    }
+    if !has(&oxygen_of) {
+        problems.push(Problem::note("no-oxygen", "the cast has no oxygen: release oxygen stays unknown"));
+    } else if !has(&|r| r.oxygen_mg_l) {
+        problems.push(Problem::note(
+            "oxygen-converted",
+            if site.place.altitude_m.is_some() {
+                "oxygen converted from percent of saturation at the altitude of the pool"
+            } else {
+                "oxygen converted from percent of saturation at sea level (no altitude given)"
+            },
+        ));
+    }
+    let conductance = has(&|r| r.specific_us_cm) || has(&|r| r.conductivity_us_cm);
+    if !has(&|r| r.solids_mg_l) && conductance {
+        problems.push(Problem::note(
+            "solids-from-conductance",
+            format!(
+                "dissolved solids taken as {:.2} mg/L per uS/cm of specific conductance",
+                site.water.tds_per_us_cm
+            ),
+        ));
+        if !has(&|r| r.specific_us_cm) {
+            problems.push(Problem::note(
+                "conductance-converted",
+                "raw conductivity converted to 25 C by 1.91 % per C",
+            ));
+        }
+    }
+    if raw.taken.is_none() {
+        problems.push(Problem::flag(
+            "no-time",
+            "the cast does not say when it was taken: its age is unknown",
+            "add a line `# taken: 2025-07-14T10:30`, or give --taken",
+        ));
+    }
+}

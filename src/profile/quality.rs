@@ -1,0 +1,241 @@
+//! Is the cast sound: gaps, spikes, inversions, oxygen above saturation, stretches beyond the samples.
+
+use crate::problem::Problem;
+use crate::site::Site;
+use crate::water;
+
+use super::column::{OxygenSample, Sample};
+use super::levelled::levelled;
+
+/// Inversions up to this density difference are ordinary, kg/m3 (choice; most real casts invert a little).
+const INVERSION_KG_M3: f64 = 0.01;
+/// And up to the density of this temperature difference there, C (choice).
+const INVERSION_C: f64 = 0.25;
+/// Inversions smaller than this are below what a sensor resolves and only counted in the note, kg/m3.
+const INVERSION_SEEN_KG_M3: f64 = 1e-4;
+/// A one-row spike needs both neighbours this near, m: farther apart, a real layer may lie between (choice).
+const SPIKE_REACH_M: f64 = 3.0;
+/// A gap matters only where the water changes across it, C (choice).
+const GAP_CHANGE_C: f64 = 0.5;
+
+/// What the examination found.
+pub(super) struct Found {
+    pub(super) flags: Vec<Problem>,
+    pub(super) large_inversion: bool,
+}
+
+/// Examines samples held against their site; every figure of the limits is the site's own `checks`.
+pub(super) fn examine(
+    site: &Site,
+    pool_m: f64,
+    samples: &[Sample],
+    lines: &[usize],
+    oxygen: &[OxygenSample],
+    oxygen_lines: &[usize],
+) -> Found {
+    let mut flags = Vec::new();
+    gaps(site, pool_m, samples, lines, &mut flags);
+    spikes(site, samples, lines, oxygen, oxygen_lines, &mut flags);
+    let large_inversion = inversions(site, samples, lines, &mut flags);
+    saturation(site, pool_m, samples, oxygen, oxygen_lines, &mut flags);
+    Found { flags, large_inversion }
+}
+
+fn gaps(site: &Site, pool_m: f64, samples: &[Sample], lines: &[usize], flags: &mut Vec<Problem>) {
+    for (pair, line) in samples.windows(2).zip(lines) {
+        let height = pair[1].elevation_m - pair[0].elevation_m;
+        let change = (pair[1].temperature_c - pair[0].temperature_c).abs();
+        if height > site.checks.gap_m && change > GAP_CHANGE_C {
+            flags.push(
+                Problem::flag(
+                    "gap",
+                    format!(
+                        "no sample for {height:.1} m between {:.2} and {:.2} m, over which the water changes by {change:.1} C",
+                        pair[0].elevation_m, pair[1].elevation_m
+                    ),
+                    "a zone limit in the gap is a guess; cast again with closer samples",
+                )
+                .on_line(*line),
+            );
+        }
+    }
+    let ends = samples.first().zip(lines.first()).zip(samples.last().zip(lines.last()));
+    if let Some(((bottom, bottom_line), (top, top_line))) = ends {
+        for (stretch, what, line) in [
+            (bottom.elevation_m - site.pool.bed_m, "above the bed", bottom_line),
+            (pool_m - top.elevation_m, "below the surface", top_line),
+        ] {
+            if stretch > site.checks.extrapolate_m {
+                flags.push(
+                    Problem::flag(
+                        "extrapolated",
+                        format!(
+                            "the last sample lies {stretch:.1} m {what}; its water is held over that stretch"
+                        ),
+                        "cast to the bed and from the surface",
+                    )
+                    .on_line(*line),
+                );
+            }
+        }
+    }
+}
+
+/// A reading that stands off both neighbours to the same side.
+fn stands_off(before: f64, here: f64, after: f64, limit: f64) -> Option<f64> {
+    let (a, b) = (here - before, here - after);
+    (a * b > 0.0 && a.abs().min(b.abs()) > limit).then(|| a.abs().min(b.abs()) * a.signum())
+}
+
+fn spikes(
+    site: &Site,
+    samples: &[Sample],
+    lines: &[usize],
+    oxygen: &[OxygenSample],
+    oxygen_lines: &[usize],
+    flags: &mut Vec<Problem>,
+) {
+    let near = |z: [f64; 3]| z[2] - z[1] <= SPIKE_REACH_M && z[1] - z[0] <= SPIKE_REACH_M;
+    for (w, line) in samples.windows(3).zip(lines.iter().skip(1)) {
+        if !near([w[0].elevation_m, w[1].elevation_m, w[2].elevation_m]) {
+            continue;
+        }
+        let off = stands_off(w[0].temperature_c, w[1].temperature_c, w[2].temperature_c, site.checks.spike_c);
+        if let Some(off) = off {
+            flags.push(
+                Problem::flag(
+                    "spike",
+                    format!(
+                        "temperature {:.2} C at {:.2} m stands {off:+.2} C off both neighbours; kept",
+                        w[1].temperature_c, w[1].elevation_m
+                    ),
+                    "blank the cell if the sensor slipped",
+                )
+                .on_line(*line),
+            );
+        }
+    }
+    for (w, line) in oxygen.windows(3).zip(oxygen_lines.iter().skip(1)) {
+        if !near([w[0].elevation_m, w[1].elevation_m, w[2].elevation_m]) {
+            continue;
+        }
+        let off = stands_off(w[0].oxygen_mg_l, w[1].oxygen_mg_l, w[2].oxygen_mg_l, site.checks.spike_mg_l);
+        if let Some(off) = off {
+            flags.push(
+                Problem::flag(
+                    "spike",
+                    format!(
+                        "oxygen {:.2} mg/L at {:.2} m stands {off:+.2} mg/L off both neighbours; kept",
+                        w[1].oxygen_mg_l, w[1].elevation_m
+                    ),
+                    "blank the cell if the sensor slipped",
+                )
+                .on_line(*line),
+            );
+        }
+    }
+}
+
+/// Flags stretches where denser water lies above lighter, largest first in words; returns whether one is large.
+fn inversions(site: &Site, samples: &[Sample], lines: &[usize], flags: &mut Vec<Problem>) -> bool {
+    let z: Vec<f64> = samples.iter().map(|s| s.elevation_m).collect();
+    let density: Vec<f64> = samples
+        .iter()
+        .map(|s| {
+            water::density_kg_m3(s.temperature_c, s.salt_g_per_kg, s.suspended_mg_l, site.water.solids_kg_m3)
+        })
+        .collect();
+    let level = levelled(&z, &density);
+    let mut small: Vec<(f64, usize, usize)> = Vec::new();
+    let mut large = false;
+    let mut from = 0;
+    while from < level.len() {
+        let mut to = from;
+        while to + 1 < level.len() && level[to + 1].to_bits() == level[from].to_bits() {
+            to += 1;
+        }
+        // how far the water of this block stands the wrong way round: greatest rise upward inside it
+        let mut least = f64::INFINITY;
+        let mut rise = 0.0_f64;
+        for &rho in &density[from..=to] {
+            least = least.min(rho);
+            rise = rise.max(rho - least);
+        }
+        if to > from && rise >= INVERSION_SEEN_KG_M3 {
+            let t = samples[from].temperature_c;
+            let per_c = (water::pure_water_kg_m3(t + INVERSION_C) - water::pure_water_kg_m3(t)).abs();
+            if rise > per_c.max(INVERSION_KG_M3) {
+                large = true;
+                flags.push(
+                    Problem::flag(
+                        "inversion-large",
+                        format!(
+                            "between {:.2} and {:.2} m denser water lies above lighter by {rise:.3} kg/m3; levelled for the zone, and the band doubled",
+                            z[from], z[to]
+                        ),
+                        "a sensor or its depth may be wrong here",
+                    )
+                    .on_line(lines[from]),
+                );
+            } else {
+                small.push((rise, from, to));
+            }
+        }
+        from = to + 1;
+    }
+    if let Some(&(rise, from, to)) = small.iter().max_by(|a, b| a.0.total_cmp(&b.0)) {
+        flags.push(
+            Problem::flag(
+                "inversion",
+                format!(
+                    "{} stretch(es) invert a little, the most by {rise:.4} kg/m3 between {:.2} and {:.2} m; levelled for the zone only",
+                    small.len(),
+                    z[from],
+                    z[to]
+                ),
+                "",
+            )
+            .on_line(lines[from]),
+        );
+    }
+    large
+}
+
+fn saturation(
+    site: &Site,
+    pool_m: f64,
+    samples: &[Sample],
+    oxygen: &[OxygenSample],
+    lines: &[usize],
+    flags: &mut Vec<Problem>,
+) {
+    let pressure = site.surface_pressure_atm(pool_m);
+    let mut over: Vec<(f64, &OxygenSample, usize)> = Vec::new();
+    for (o, line) in oxygen.iter().zip(lines) {
+        let near = samples.iter().min_by(|a, b| {
+            (a.elevation_m - o.elevation_m).abs().total_cmp(&(b.elevation_m - o.elevation_m).abs())
+        });
+        let Some(near) = near else { continue };
+        let share = o.oxygen_mg_l / water::saturation_mg_l(near.temperature_c, near.salt_g_per_kg, pressure);
+        if share > site.checks.oxygen_share {
+            over.push((share, o, *line));
+        }
+    }
+    if let Some((share, o, line)) = over.iter().max_by(|a, b| a.0.total_cmp(&b.0)) {
+        flags.push(
+            Problem::flag(
+                "oxygen-above-saturation",
+                format!(
+                    "{} oxygen reading(s) above {:.0} % of saturation, the most {:.0} % ({:.2} mg/L at {:.2} m); kept as measured",
+                    over.len(),
+                    100.0 * site.checks.oxygen_share,
+                    100.0 * share,
+                    o.oxygen_mg_l,
+                    o.elevation_m
+                ),
+                "an algal bloom does this; so does a sensor out of calibration",
+            )
+            .on_line(*line),
+        );
+    }
+}
