@@ -1,5 +1,7 @@
 //! gatemix: which gates, how far open, so that the river below a dam gets the water it needs.
 
+pub mod intake;
+pub mod mix;
 pub mod problem;
 pub mod profile;
 pub mod site;

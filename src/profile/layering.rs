@@ -142,7 +142,8 @@ pub fn buoyancy_s2(lower: (f64, f64), upper: (f64, f64)) -> f64 {
     G_M_S2 / mean * (lower.1 - upper.1) / (upper.0 - lower.0)
 }
 
-fn greatest_buoyancy(column: &Column) -> Option<(f64, f64)> {
+/// Greatest squared buoyancy frequency over at least 1 m and its elevation, 1/s2 and m.
+pub fn greatest_buoyancy(column: &Column) -> Option<(f64, f64)> {
     let points: Vec<(f64, f64)> =
         column.nodes_m().iter().copied().zip(column.node_density_kg_m3().iter().copied()).collect();
     points

@@ -1,0 +1,399 @@
+//! A setting judged: what stops it, what it gives, how it stands, and what to beware of.
+
+use std::f64::consts::PI;
+
+use chrono::NaiveDate;
+
+use crate::intake;
+use crate::problem::Problem;
+use crate::profile::{Column, Profile};
+use crate::site::Site;
+use crate::target::{Standing, Target};
+use crate::withdrawal::CrestForm;
+
+use super::band::{Perturbed, Spread};
+use super::blend::{Blend, Drawn, draw_levels, overlapping, release, release_joined};
+use super::levels::{Setting, groups, levels};
+
+/// A zone thinner than this many opening heights is no longer that of a point sink (common practice, no source).
+const THIN_HEIGHTS: f64 = 3.0;
+/// A free limit stands in mixed water when density changes less than this over a metre there, kg/m3 (choice).
+const MIXED_KG_M3_M: f64 = 1e-3;
+/// More of the release than this from water below 1 mg/L makes the oxygen an upper bound (choice).
+const LOW_OXYGEN_SHARE: f64 = 0.05;
+/// Flow over an ungated crest set by hand may differ from its rating by this share (choice).
+const CREST_SHARE: f64 = 0.05;
+/// Rotation of the Earth, rad/s (standard).
+const EARTH_RAD_S: f64 = 7.292_115e-5;
+
+/// How the release stands against one target.
+#[derive(Debug, Clone, PartialEq)]
+pub struct TargetStanding {
+    /// Index in the site's targets.
+    pub target: usize,
+    /// Temperature by the rule's statistic, C.
+    pub value_c: Option<f64>,
+    /// Standing of the temperature and distance outside, C.
+    pub temperature: (Standing, Option<f64>),
+    /// Oxygen, mg/L.
+    pub oxygen_mg_l: Option<f64>,
+    /// Standing of the oxygen and distance below, mg/L.
+    pub oxygen: (Standing, Option<f64>),
+    /// Share of the perturbed cases inside the temperature range.
+    pub share_inside: Option<f64>,
+    /// Share of the perturbed cases above the oxygen minimum.
+    pub oxygen_share_inside: Option<f64>,
+    /// Share of the perturbed cases inside both.
+    pub share_inside_both: Option<f64>,
+    /// The strictest rule of its point on that date.
+    pub governs: bool,
+}
+
+impl TargetStanding {
+    /// Whether either standing is a miss.
+    pub fn missed(&self) -> bool {
+        [self.temperature.0, self.oxygen.0].iter().any(|s| matches!(s, Standing::Below | Standing::Above))
+    }
+}
+
+/// A setting with everything computed from it.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Mix {
+    /// Levels from the lowest up.
+    pub levels: Vec<Drawn>,
+    /// The release leaving the pool.
+    pub release: Blend,
+    /// The perturbed cases.
+    pub spread: Spread,
+    /// Standing against every target valid on the date.
+    pub targets: Vec<TargetStanding>,
+    /// Limits that nobody gave or that this version cannot judge.
+    pub not_checked: Vec<String>,
+    /// What to beware of, limits broken included.
+    pub warnings: Vec<Problem>,
+}
+
+/// What makes a setting impossible under a pool: a gate out of the water, a flow above capacity. A pool below a
+/// gate is no error in itself; naming that gate in a setting is.
+pub fn refusals(site: &Site, setting: &Setting, pool_m: f64) -> Vec<Problem> {
+    let mut out = Vec::new();
+    for gate in &setting.gates {
+        let Some(outlet) = site.outlets.get(gate.outlet) else { continue };
+        let name = &outlet.name;
+        if !intake::is_wet(outlet, gate.opening, pool_m) {
+            let centre = outlet.open_part(gate.opening).centre_m;
+            out.push(Problem::refused(
+                "dry",
+                format!(
+                    "`{name}` at {centre:.2} m stands {:.2} m above the pool {pool_m:.2} m",
+                    centre - pool_m
+                ),
+                "choose an outlet below the water",
+            ));
+            continue;
+        }
+        let free = intake::crest_flow_m3s(outlet, pool_m);
+        if let (true, Some(free)) = (intake::spills_by_itself(outlet), free)
+            && (gate.flow_m3s - free).abs() > CREST_SHARE * free
+        {
+            out.push(Problem::refused(
+                "crest-flow",
+                format!(
+                    "`{name}` has no gates: it passes {free:.2} m3/s at this pool, not {:.2} m3/s",
+                    gate.flow_m3s
+                ),
+                "leave its flow out; it spills by itself",
+            ));
+            continue;
+        }
+        if let Some(most) = intake::capacity_m3s(site, outlet, gate.opening, pool_m)
+            && gate.flow_m3s > most * (1.0 + 1e-9)
+        {
+            out.push(Problem::refused(
+                "capacity",
+                format!("{:.2} m3/s through `{name}` is above its capacity of {most:.2} m3/s", gate.flow_m3s),
+                "lower the flow, or share it with another outlet",
+            ));
+        }
+    }
+    out
+}
+
+/// Judges a setting against a profile on a date. `None` when nothing flows.
+pub fn judge(
+    site: &Site,
+    profile: &Profile,
+    perturbed: &Perturbed,
+    setting: &Setting,
+    date: NaiveDate,
+) -> Option<Mix> {
+    let column = &profile.column;
+    let groups = groups(site);
+    let drawn =
+        draw_levels(column, &levels(site, &groups, setting, profile.pool_m, 0.5, CrestForm::Overflow), 1.0);
+    let release = release(&drawn)?;
+    let spread = perturbed.spread(site, &groups, setting, &release);
+    let targets = standings(site, &release, &spread, date);
+    let mut warnings = Vec::new();
+    limits(site, setting, profile.pool_m, &release, &mut warnings);
+    zones(site, column, &drawn, &mut warnings);
+    overlaps(column, &drawn, &release, &mut warnings);
+    oxygen(site, &drawn, &release, &mut warnings);
+    cautions(site, column, &drawn, &mut warnings);
+    Some(Mix { levels: drawn, release, spread, targets, not_checked: not_checked(site, setting), warnings })
+}
+
+/// Standing of a release against every target valid on a date; the rule with the least room governs.
+fn standings(site: &Site, release: &Blend, spread: &Spread, date: NaiveDate) -> Vec<TargetStanding> {
+    let valid = |t: &&(usize, &Target)| t.1.span.contains(date);
+    let all: Vec<(usize, &Target)> = site.targets.iter().enumerate().collect();
+    let mut out: Vec<TargetStanding> = all
+        .iter()
+        .filter(valid)
+        .map(|&(target, rule)| {
+            let value_c = Some(rule.statistic.of_steady(release.temperature_c));
+            let inside = |s: (Standing, Option<f64>)| s.0 == Standing::Inside;
+            let has_range = rule.low_c.is_some() || rule.high_c.is_some();
+            let warm = |t: f64| !has_range || inside(rule.temperature(Some(t)));
+            let aired = |o: Option<f64>| rule.oxygen_min_mg_l.is_none() || inside(rule.oxygen(o));
+            TargetStanding {
+                target,
+                value_c,
+                temperature: rule.temperature(value_c),
+                oxygen_mg_l: release.oxygen_mg_l,
+                oxygen: rule.oxygen(release.oxygen_mg_l),
+                share_inside: if has_range { spread.share(|t, _| warm(t)) } else { None },
+                oxygen_share_inside: if rule.oxygen_min_mg_l.is_some() && release.oxygen_mg_l.is_some() {
+                    spread.share(|_, o| aired(o))
+                } else {
+                    None
+                },
+                share_inside_both: if rule.oxygen_min_mg_l.is_some() && release.oxygen_mg_l.is_none() {
+                    None
+                } else {
+                    spread.share(|t, o| warm(t) && aired(o))
+                },
+                governs: false,
+            }
+        })
+        .collect();
+    let room = |s: &TargetStanding| site.targets[s.target].room(s.value_c, s.oxygen_mg_l);
+    let strictest = out
+        .iter()
+        .enumerate()
+        .filter_map(|(i, s)| Some((i, room(s)?)))
+        .min_by(|a, b| a.1.total_cmp(&b.1))
+        .map(|(i, _)| i);
+    if let Some(i) = strictest {
+        out[i].governs = true;
+    }
+    out
+}
+
+/// Limits of the site that the setting breaks.
+fn limits(site: &Site, setting: &Setting, pool_m: f64, release: &Blend, warnings: &mut Vec<Problem>) {
+    let mut broken = |words: String| warnings.push(Problem::flag("limit", words, ""));
+    let mut wells = vec![(0.0_f64, 0_usize); site.wells.len()];
+    for gate in &setting.gates {
+        let Some(outlet) = site.outlets.get(gate.outlet) else { continue };
+        let name = &outlet.name;
+        let depth = intake::submergence_m(outlet, gate.opening, pool_m);
+        if let Some(least) = outlet.min_submergence_m
+            && depth < least
+        {
+            broken(format!(
+                "min_submergence of {name}: {depth:.2} m of water above it, {least:.2} m asked for"
+            ));
+        }
+        if gate.flow_m3s < outlet.flow_min_m3s {
+            broken(format!(
+                "flow.min of {name}: {:.2} m3/s set, {:.2} m3/s asked for",
+                gate.flow_m3s, outlet.flow_min_m3s
+            ));
+        }
+        if let Some(well) = outlet.well {
+            wells[well].0 += gate.flow_m3s;
+            wells[well].1 += 1;
+        }
+    }
+    for (well, (flow, open)) in site.wells.iter().zip(wells) {
+        if let Some(most) = well.max_flow_m3s
+            && flow > most * (1.0 + 1e-9)
+        {
+            broken(format!("max_flow of well {}: {flow:.2} m3/s set, {most:.2} m3/s allowed", well.name));
+        }
+        if let Some(most) = well.max_open
+            && open > most
+        {
+            broken(format!("max_open of well {}: {open} gates open, {most} allowed", well.name));
+        }
+    }
+    let total = release.flow_m3s;
+    if let Some(least) = site.release.min_m3s
+        && total < least * (1.0 - 1e-9)
+    {
+        broken(format!("release.min: {total:.2} m3/s in total, {least:.2} m3/s asked for"));
+    }
+    if let Some(most) = site.release.max_m3s
+        && total > most * (1.0 + 1e-9)
+    {
+        broken(format!("release.max: {total:.2} m3/s in total, {most:.2} m3/s allowed"));
+    }
+}
+
+fn level_name(site: &Site, drawn: &Drawn) -> String {
+    let names: Vec<&str> = drawn.level.outlets.iter().map(|&i| site.outlets[i].name.as_str()).collect();
+    names.join(", ")
+}
+
+/// Where the zone's assumptions are thin.
+fn zones(site: &Site, column: &Column, drawn: &[Drawn], warnings: &mut Vec<Problem>) {
+    for d in drawn {
+        let Some(zone) = &d.zone else { continue };
+        let name = level_name(site, d);
+        for (side, what) in [(&zone.lower, "lower"), (&zone.upper, "upper")] {
+            if side.end == crate::withdrawal::End::Boundary {
+                continue;
+            }
+            let change =
+                (column.density_kg_m3(side.limit_m - 0.5) - column.density_kg_m3(side.limit_m + 0.5)).abs();
+            if change < MIXED_KG_M3_M {
+                warnings.push(Problem::flag(
+                    "mixed-layer-limit",
+                    format!(
+                        "the {what} limit of {name} ({:.2} m) lies in mixed water: nothing physical stops it there",
+                        side.limit_m
+                    ),
+                    "",
+                ));
+            }
+        }
+        let reach = (zone.upper.limit_m - zone.centre_m).min(zone.centre_m - zone.lower.limit_m);
+        let free =
+            zone.upper.end == crate::withdrawal::End::Free && zone.lower.end == crate::withdrawal::End::Free;
+        if free && reach < THIN_HEIGHTS * d.level.height_m {
+            warnings.push(Problem::flag(
+                "thin-zone",
+                format!(
+                    "the zone of {name} reaches {reach:.1} m, less than {THIN_HEIGHTS:.0} opening heights: a point sink is a rough picture of it"
+                ),
+                "",
+            ));
+        }
+    }
+    if !column.has_width() {
+        warnings.push(Problem::note(
+            "width-assumed",
+            "no widths in the pool table: the pool is taken as equally wide at every elevation",
+        ));
+    }
+}
+
+fn overlaps(column: &Column, drawn: &[Drawn], release: &Blend, warnings: &mut Vec<Problem>) {
+    let groups = overlapping(drawn);
+    if groups.is_empty() {
+        return;
+    }
+    if let Some(joined) = release_joined(column, drawn, &groups, 1.0) {
+        warnings.push(Problem::flag(
+            "zones-overlap",
+            format!(
+                "levels lie inside each other's zones; as one sink they would give {:+.2} C; the difference is in the band",
+                joined.temperature_c - release.temperature_c
+            ),
+            "",
+        ));
+    }
+}
+
+fn oxygen(site: &Site, drawn: &[Drawn], release: &Blend, warnings: &mut Vec<Problem>) {
+    for d in drawn {
+        let Some(draw) = &d.draw else { continue };
+        if draw.oxygen_mg_l.is_none() {
+            let words = if draw.oxygen_missing_share >= 1.0 - 1e-9 {
+                format!("no oxygen reading reaches the zone of {}", level_name(site, d))
+            } else {
+                format!(
+                    "{:.0} % of the water of {} comes from where no oxygen reading reaches",
+                    100.0 * draw.oxygen_missing_share,
+                    level_name(site, d)
+                )
+            };
+            warnings.push(Problem::flag(
+                "oxygen-missing",
+                format!("{words}: release oxygen stays unknown"),
+                "",
+            ));
+        }
+    }
+    if release.oxygen_low_share > LOW_OXYGEN_SHARE && release.oxygen_mg_l.is_some() {
+        warnings.push(Problem::flag(
+            "oxygen-upper-bound",
+            format!(
+                "{:.0} % of the release comes from water below 1 mg/L: sulphide, iron and manganese take up oxygen after mixing, so the figure is an upper bound",
+                100.0 * release.oxygen_low_share
+            ),
+            "",
+        ));
+    }
+}
+
+fn cautions(site: &Site, column: &Column, drawn: &[Drawn], warnings: &mut Vec<Problem>) {
+    let spills = drawn.iter().any(|d| d.level.outlets.iter().any(|&i| site.outlets[i].is_crest()));
+    if spills {
+        warnings.push(Problem::flag(
+            "dissolved-gas",
+            "spill takes up air: watch total dissolved gas below the dam (110 % is the usual criterion); not predicted",
+            "",
+        ));
+    }
+    if let (Some(latitude), Some(width)) = (site.place.latitude_deg, site.pool.width_m(column.surface_m())) {
+        let (bed, surface) = (column.bed_m(), column.surface_m());
+        let lower = (bed, column.density_kg_m3(bed));
+        let upper = (surface, column.density_kg_m3(surface));
+        let buoyancy = crate::profile::buoyancy_s2(lower, upper).max(0.0).sqrt();
+        let coriolis = (2.0 * EARTH_RAD_S * latitude.to_radians().sin()).abs();
+        if coriolis > 0.0 && buoyancy * (surface - bed) / (PI * coriolis) < width {
+            warnings.push(Problem::flag(
+                "rotation",
+                "the pool is wide enough for the Earth's rotation to matter: zones may be thicker than computed",
+                "",
+            ));
+        }
+    }
+}
+
+/// Limits nobody gave, and those this version does not judge, by name.
+fn not_checked(site: &Site, setting: &Setting) -> Vec<String> {
+    let mut out = Vec::new();
+    let mut used: Vec<usize> = setting.gates.iter().map(|g| g.outlet).collect();
+    used.sort_unstable_by_key(|&i| site.outlets.get(i).map(|o| o.name.clone()));
+    for outlet in used.iter().filter_map(|&i| site.outlets.get(i)) {
+        if outlet.min_submergence_m.is_none() {
+            out.push(format!("min_submergence of {}", outlet.name));
+        }
+        if outlet.flow_max_m3s.is_none() && !outlet.is_crest() {
+            out.push(format!("flow.max of {}", outlet.name));
+        }
+    }
+    let mut wells: Vec<usize> = used.iter().filter_map(|&i| site.outlets.get(i)?.well).collect();
+    wells.sort_unstable_by_key(|&w| &site.wells[w].name);
+    wells.dedup();
+    for well in wells.iter().map(|&w| &site.wells[w]) {
+        out.push(format!("max_head_loss of {}", well.name));
+        if well.max_flow_m3s.is_none() {
+            out.push(format!("max_flow of {}", well.name));
+        }
+        if well.max_open.is_none() {
+            out.push(format!("max_open of {}", well.name));
+        }
+    }
+    if site.release.min_m3s.is_none() {
+        out.push("release.min".into());
+    }
+    if site.release.max_m3s.is_none() {
+        out.push("release.max".into());
+    }
+    out.extend(["max_flow_change", "max_temperature_change", "max_drawdown_per_day"].map(str::to_owned));
+    out
+}
