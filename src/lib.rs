@@ -1,5 +1,6 @@
 //! gatemix: which gates, how far open, so that the river below a dam gets the water it needs.
 
+pub mod files;
 pub mod intake;
 pub mod mix;
 pub mod problem;
