@@ -1,5 +1,7 @@
 //! What the readers do with input that is wrong, hostile or merely odd.
 
+#![expect(clippy::unwrap_used, reason = "helpers of tests stand outside test functions")]
+
 #[path = "bad_input/atomic.rs"]
 mod atomic;
 #[path = "bad_input/cursor.rs"]

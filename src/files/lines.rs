@@ -81,7 +81,10 @@ impl Splitter {
         let cell = |end: &usize| {
             let bytes = &self.cells[start..*end];
             start = *end;
-            String::from_utf8_lossy(bytes).trim().to_owned()
+            let cell = String::from_utf8_lossy(bytes);
+            // a blank between delimiter and quote hides the quotes from the splitter
+            let cell = cell.trim();
+            cell.strip_prefix('"').and_then(|c| c.strip_suffix('"')).unwrap_or(cell).to_owned()
         };
         Ok(self.ends[..ended + more].iter().map(cell).collect())
     }

@@ -1,6 +1,7 @@
 //! A YAML document as a plain tree that keeps repeated keys, and the line of any path in it.
 
 use std::cell::Cell;
+use std::collections::HashSet;
 use std::fmt;
 
 use serde::de::{DeserializeSeed, EnumAccess, Error as _, MapAccess, SeqAccess, Visitor};
@@ -13,6 +14,9 @@ mod locate;
 /// Memory that the tree of one document may take, in bytes (choice): twice what the largest file read
 /// can spell out, so that only repeated anchors can pass it.
 const TREE_CAP: usize = 128 << 20;
+
+/// Brackets open at once in one document (choice; the parser itself stops at 128).
+const MOST_OPEN: usize = 1000;
 
 /// One value of the tree.
 #[derive(Debug, Clone, PartialEq)]
@@ -48,6 +52,14 @@ impl Document {
     /// repetition without bounds.
     pub fn parse(text: &str) -> Result<Self, Problem> {
         let text = text.strip_prefix('\u{feff}').unwrap_or(text);
+        if let Some(line) = too_deep(text) {
+            let words = format!("more than {MOST_OPEN} brackets are open here");
+            return Err(Problem::refused("yaml", words, FLATTER).on_line(line));
+        }
+        if let Some((line, name)) = anchor_set_twice(text) {
+            let words = format!("the anchor &{name} is set a second time, so that *{name} could mean either");
+            return Err(Problem::refused("yaml", words, "give each anchor its own name").on_line(line));
+        }
         let mut documents = serde_yaml::Deserializer::from_str(text);
         let left = Cell::new(TREE_CAP);
         let root = match documents.next() {
@@ -89,7 +101,7 @@ fn syntax(error: &serde_yaml::Error, text: &str) -> Problem {
 
 fn cure_of(message: &str) -> &'static str {
     if message.contains("recursion limit") {
-        "lists and maps stand too deep inside one another; write them flatter"
+        FLATTER
     } else if message.contains("repetition limit") || message.contains(TOO_MUCH) {
         "write the values out instead of repeating anchors"
     } else if message.contains(NO_TAGS) {
@@ -99,12 +111,44 @@ fn cure_of(message: &str) -> &'static str {
     }
 }
 
+/// Line on which too many brackets are open, counted wherever they stand: the parser's time grows with
+/// the square of that number.
+fn too_deep(text: &str) -> Option<usize> {
+    let mut open = 0_usize;
+    file_lines(text).find_map(|(number, line)| {
+        for byte in line.bytes() {
+            match byte {
+                b'[' | b'{' => open += 1,
+                b']' | b'}' => open = open.saturating_sub(1),
+                _ => {}
+            }
+            if open > MOST_OPEN {
+                return Some(number);
+            }
+        }
+        None
+    })
+}
+
+/// An anchor that is set twice and used. YAML takes the nearer one; the parser may give the value of yet
+/// another anchor, so it is refused.
+fn anchor_set_twice(text: &str) -> Option<(usize, &str)> {
+    let words = |line| str::split(line, [' ', '\t', '[', ']', '{', '}', ',', ':']);
+    let used: HashSet<_> = text.lines().flat_map(words).filter_map(|word| word.strip_prefix('*')).collect();
+    let anchors = file_lines(text).flat_map(|(number, line)| words(line).map(move |word| (number, word)));
+    let mut set = HashSet::new();
+    anchors
+        .filter_map(|(number, word)| Some((number, word.strip_prefix('&')?)))
+        .find(|(_, name)| !name.is_empty() && !set.insert(*name) && used.contains(name))
+}
+
 /// First line, up to the one after `line`, whose indent holds a tab.
 fn tab_indent(text: &str, line: usize) -> Option<usize> {
     let indent = |l: &str| l.len() - l.trim_start_matches([' ', '\t']).len();
     file_lines(text).take(line + 1).find(|(_, l)| l[..indent(l)].contains('\t')).map(|(number, _)| number)
 }
 
+const FLATTER: &str = "lists and maps stand too deep inside one another; write them flatter";
 const TOO_MUCH: &str = "the anchors repeat too much";
 const NO_TAGS: &str = "a !tag has no meaning here";
 
@@ -141,6 +185,10 @@ impl<'de> Visitor<'de> for Tree<'_> {
     }
 
     fn visit_unit<E: serde::de::Error>(self) -> Result<Node, E> {
+        self.leaf(Node::Null)
+    }
+
+    fn visit_none<E: serde::de::Error>(self) -> Result<Node, E> {
         self.leaf(Node::Null)
     }
 

@@ -162,7 +162,7 @@ fn scenario_a_near_miss_of_a_key_names_the_key() {
 
 #[test]
 fn scenario_hostile_keys_and_values_stay_harmless_and_short() {
-    let long = "k".repeat(5000);
+    let long = "k".repeat(1000);
     let text = format!("\"a\\e[2Jb\": \"x\\e]0;y\\a\"\n{long}: 1\nvalue: {long}\n");
     let said = walk(&text, |walk| {
         let map = walk.root().map().unwrap();

@@ -1,3 +1,5 @@
+use std::fmt::Write;
+
 use gatemix::files::atomic;
 use gatemix::files::cursor::{Value, Walk};
 use gatemix::files::table::Table;
@@ -73,11 +75,11 @@ fn spell(keys: &[(u8, Vec<i32>)]) -> (String, Vec<(String, usize)>) {
             text += "# between\n\n";
             line += 2;
         }
-        text += &format!("k{index}:\n");
+        writeln!(text, "k{index}:").unwrap();
         lines.push((format!("k{index}"), line));
         line += 1;
         for (place, value) in values.iter().enumerate() {
-            text += &format!("  - {{ v: {value},\n      w: [1,\n      {value}] }}\n");
+            writeln!(text, "  - {{ v: {value},\n      w: [1,\n      {value}] }}").unwrap();
             lines.push((format!("k{index}[{place}].v"), line));
             lines.push((format!("k{index}[{place}].w[0]"), line + 1));
             lines.push((format!("k{index}[{place}].w[1]"), line + 2));

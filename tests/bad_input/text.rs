@@ -1,6 +1,7 @@
 use std::cell::Cell;
 use std::fs::{self, File};
-use std::io::{self, Read};
+use std::io::{self, Read, Write};
+use std::os::fd::AsRawFd;
 use std::path::Path;
 use std::process::Command;
 
@@ -42,6 +43,15 @@ fn scenario_a_pipe_or_device_named_as_a_file_is_refused_without_waiting() {
         let said = refused(path, Format::Csv);
         assert!(said.ends_with(expected), "{said}");
     }
+}
+
+#[test]
+fn scenario_an_open_stream_can_be_named_by_its_number() {
+    let (reader, mut writer) = io::pipe().unwrap();
+    writer.write_all(b"depth_m\n1\n").unwrap();
+    drop(writer);
+    let path = format!("/dev/fd/{}", reader.as_raw_fd());
+    assert_eq!(read(Path::new(&path), Format::Csv).unwrap().text, "depth_m\n1\n");
 }
 
 #[test]

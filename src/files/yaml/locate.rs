@@ -8,6 +8,7 @@ use std::fmt;
 use serde::de::{DeserializeSeed, IgnoredAny, MapAccess, SeqAccess, Visitor};
 
 use super::{Document, Node};
+use crate::files::lines::file_lines;
 use crate::problem::Problem;
 
 /// Bytes read again for the lines of one document (choice, about a second): thousands of lines for an
@@ -37,7 +38,9 @@ impl Document {
         }
         self.reread.set(reread);
         let document = serde_yaml::Deserializer::from_str(&self.text).next()?;
-        Fail { steps: &steps }.deserialize(document).err()?.location().map(|place| place.line())
+        let line = Fail { steps: &steps }.deserialize(document).err()?.location()?.line();
+        // an empty document ends, for the parser, on the line after its last one
+        Some(line.min(file_lines(&self.text).count().max(1)))
     }
 
     /// Gives every problem that has a path but no line the line of that path, or of the nearest parent
