@@ -291,7 +291,8 @@ impl Folder {
             hash.update((source.bytes.len() as u64).to_le_bytes());
             hash.update(&source.bytes);
         }
-        hash.finalize().iter().take(6).map(|b| format!("{b:02x}")).collect()
+        let digits = |b: &u8| [b >> 4, b & 15].map(|d| char::from_digit(d.into(), 16).unwrap_or('0'));
+        hash.finalize().iter().take(6).flat_map(digits).collect()
     }
 }
 

@@ -9,7 +9,7 @@ use crate::units::{Dimension, Folder};
 
 use super::cast::Column;
 use super::cursor::{Map, Scalar, Value, Walk};
-use super::yaml::Document;
+use super::yaml::{Document, Node};
 
 /// Reads and checks the text of a site file. The list holds every problem, flag and note with file and line;
 /// the site is `None` when any refuses.
@@ -230,10 +230,7 @@ fn pool_row(read: &In, row: &Value) -> Option<RawRow> {
         return None;
     }
     let cell = |i: usize, dimension| {
-        cells
-            .get(i)
-            .filter(|v| *v.node() != super::yaml::Node::Null)
-            .and_then(|v| read.quantity(v, dimension))
+        cells.get(i).filter(|v| *v.node() != Node::Null).and_then(|v| read.quantity(v, dimension))
     };
     Some(RawRow {
         elevation_m: cell(0, Dimension::Length)?,
@@ -324,21 +321,16 @@ fn pair(read: &In, value: &Value, dimensions: [Dimension; 2]) -> Option<(f64, f6
 }
 
 fn position(read: &In, value: &Value) -> Option<Position> {
-    use super::yaml::Node;
-    match value.node() {
-        Node::Map(_) => {
-            let map = value.map()?;
-            let name = map.required("name").and_then(|v| v.text().map(str::to_owned));
-            let crest_m = read.optional(&map, "crest", Dimension::Length);
-            let opening = read.optional(&map, "open", Dimension::Percent).map_or(1.0, |p| p / 100.0);
-            map.finish();
-            Some(Position { name: name?, opening, crest_m })
-        }
-        _ => {
-            let percent = read.quantity(value, Dimension::Percent)?;
-            Some(Position { name: format!("{percent}"), opening: percent / 100.0, crest_m: None })
-        }
+    if let Node::Map(_) = value.node() {
+        let map = value.map()?;
+        let name = map.required("name").and_then(|v| v.text().map(str::to_owned));
+        let crest_m = read.optional(&map, "crest", Dimension::Length);
+        let opening = read.optional(&map, "open", Dimension::Percent).map_or(1.0, |p| p / 100.0);
+        map.finish();
+        return Some(Position { name: name?, opening, crest_m });
     }
+    let percent = read.quantity(value, Dimension::Percent)?;
+    Some(Position { name: format!("{percent}"), opening: percent / 100.0, crest_m: None })
 }
 
 fn now(read: &In, map: &Map) -> Vec<(String, SetNow)> {
@@ -408,7 +400,7 @@ fn band(read: &In, map: &Map, raw: &mut Raw) {
         match cells.iter().map(Value::number).collect::<Option<Vec<f64>>>().as_deref() {
             Some(&[low, high]) => (b.zone_low, b.zone_high) = (low, high),
             Some(_) => {
-                value.report(Problem::refused("pair", "two numbers belong here", "write [first, second]"))
+                value.report(Problem::refused("pair", "two numbers belong here", "write [first, second]"));
             }
             None => {}
         }
