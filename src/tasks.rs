@@ -129,7 +129,9 @@ pub fn open(asked: &Asked, clock: DateTime<Utc>) -> Result<Context, Failure> {
 }
 
 fn open_folder(asked: &Asked) -> Result<Folder, Failure> {
-    if let Some(named) = &asked.site { Ok(Folder::open(named)?) } else {
+    if let Some(named) = &asked.site {
+        Ok(Folder::open(named)?)
+    } else {
         let first = demonstrations().first().copied().unwrap_or_default();
         Ok(Folder::demonstration(first)?)
     }

@@ -55,8 +55,9 @@ pub fn drawn_column(site: &Site, profile: &Profile, drawn: &[Drawn], system: Sys
         } else {
             figure(middle, length, 0)
         };
-        let _ = write!(out, 
-            "{label:>7} | {} | {} | {} |\n",
+        let _ = writeln!(
+            out,
+            "{label:>7} | {} | {} | {} |",
             names(site, drawn, within),
             bars(profile, &zones, middle, within),
             curves(profile, middle, &temperature, oxygen.as_ref(), system)
@@ -65,10 +66,10 @@ pub fn drawn_column(site: &Site, profile: &Profile, drawn: &[Drawn], system: Sys
     let dry: Vec<String> =
         site.outlets.iter().filter(|o| o.centre_m > surface).map(|o| harmless(&o.name)).collect();
     if !dry.is_empty() {
-        let _ = write!(out, "{:>7}   above the water: {}\n", "", dry.join(", "));
+        let _ = writeln!(out, "{:>7}   above the water: {}", "", dry.join(", "));
     }
     if !zones.is_empty() {
-        let _ = write!(out, "{:>7}   zones: @ peak, # strong, + middling, . weak; > draws\n", ""));
+        let _ = writeln!(out, "{:>7}   zones: @ peak, # strong, + middling, . weak; > draws", "");
     }
     out
 }
