@@ -217,9 +217,7 @@ fn answer(cli: &Cli, clock: DateTime<Utc>) -> Result<(Vec<u8>, End), Stop> {
         None => {
             let asked = Asked { site: cli.folder.clone(), ..Asked::default() };
             let context = tasks::open(&asked, clock)?;
-            let mut shown = text::pool(&context, &tasks::pool(&context));
-            shown.push('\n');
-            shown.push_str(&text::mix(&context, &tasks::mix(&context, &[])?));
+            let shown = text::both(&context, &tasks::pool(&context), &tasks::mix(&context, &[])?);
             Ok((shown.into_bytes(), End::Answered))
         }
         Some(Command::Pool { common }) => {
