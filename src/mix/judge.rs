@@ -9,6 +9,7 @@ use crate::problem::Problem;
 use crate::profile::{Column, Profile};
 use crate::site::Site;
 use crate::target::{Standing, Target};
+use crate::units::say;
 use crate::withdrawal::CrestForm;
 
 use super::band::{Perturbed, Spread};
@@ -85,8 +86,10 @@ pub fn refusals(site: &Site, setting: &Setting, pool_m: f64) -> Vec<Problem> {
             out.push(Problem::refused(
                 "dry",
                 format!(
-                    "`{name}` at {centre:.2} m stands {:.2} m above the pool {pool_m:.2} m",
-                    centre - pool_m
+                    "`{name}` at {} is dry, {} above the pool {}",
+                    say::m(centre, 2),
+                    say::m(centre - pool_m, 2),
+                    say::m(pool_m, 2)
                 ),
                 "choose an outlet below the water",
             ));
@@ -99,10 +102,11 @@ pub fn refusals(site: &Site, setting: &Setting, pool_m: f64) -> Vec<Problem> {
             out.push(Problem::refused(
                 "crest-flow",
                 format!(
-                    "`{name}` has no gates: it passes {free:.2} m3/s at this pool, not {:.2} m3/s",
-                    gate.flow_m3s
+                    "`{name}` has no gates: at this pool it passes {}, not {}",
+                    say::m3s(free, 2),
+                    say::m3s(gate.flow_m3s, 2)
                 ),
-                "leave its flow out; it spills by itself",
+                "leave out its flow; it spills by itself",
             ));
             continue;
         }
@@ -111,7 +115,11 @@ pub fn refusals(site: &Site, setting: &Setting, pool_m: f64) -> Vec<Problem> {
         {
             out.push(Problem::refused(
                 "capacity",
-                format!("{:.2} m3/s through `{name}` is above its capacity of {most:.2} m3/s", gate.flow_m3s),
+                format!(
+                    "{} through `{name}` is above its capacity of {}",
+                    say::m3s(gate.flow_m3s, 2),
+                    say::m3s(most, 2)
+                ),
                 "lower the flow, or share it with another outlet",
             ));
         }
@@ -192,7 +200,7 @@ fn standings(site: &Site, release: &Blend, spread: &Spread, date: NaiveDate) -> 
 
 /// Limits of the site that the setting breaks.
 fn limits(site: &Site, setting: &Setting, pool_m: f64, release: &Blend, warnings: &mut Vec<Problem>) {
-    let mut broken = |words: String| warnings.push(Problem::flag("limit", words, ""));
+    let mut broken = |words: String, cure: &str| warnings.push(Problem::flag("limit", words, cure));
     let mut wells = vec![(0.0_f64, 0_usize); site.wells.len()];
     for gate in &setting.gates {
         let Some(outlet) = site.outlets.get(gate.outlet) else { continue };
@@ -201,15 +209,24 @@ fn limits(site: &Site, setting: &Setting, pool_m: f64, release: &Blend, warnings
         if let Some(least) = outlet.min_submergence_m
             && depth < least
         {
-            broken(format!(
-                "min_submergence of {name}: {depth:.2} m of water above it, {least:.2} m asked for"
-            ));
+            broken(
+                format!(
+                    "min_submergence of `{name}`: {} of water above it, {} required",
+                    say::m(depth, 2),
+                    say::m(least, 2)
+                ),
+                "use a lower outlet",
+            );
         }
         if gate.flow_m3s < outlet.flow_min_m3s {
-            broken(format!(
-                "flow.min of {name}: {:.2} m3/s set, {:.2} m3/s asked for",
-                gate.flow_m3s, outlet.flow_min_m3s
-            ));
+            broken(
+                format!(
+                    "flow.min of `{name}`: {} set, {} required",
+                    say::m3s(gate.flow_m3s, 2),
+                    say::m3s(outlet.flow_min_m3s, 2)
+                ),
+                "raise its flow, or shut it",
+            );
         }
         if let Some(well) = outlet.well {
             wells[well].0 += gate.flow_m3s;
@@ -220,24 +237,41 @@ fn limits(site: &Site, setting: &Setting, pool_m: f64, release: &Blend, warnings
         if let Some(most) = well.max_flow_m3s
             && flow > most * (1.0 + 1e-9)
         {
-            broken(format!("max_flow of well {}: {flow:.2} m3/s set, {most:.2} m3/s allowed", well.name));
+            broken(
+                format!(
+                    "max_flow of well `{}`: {} set, {} allowed",
+                    well.name,
+                    say::m3s(flow, 2),
+                    say::m3s(most, 2)
+                ),
+                "lower the flow of its gates",
+            );
         }
         if let Some(most) = well.max_open
             && open > most
         {
-            broken(format!("max_open of well {}: {open} gates open, {most} allowed", well.name));
+            broken(
+                format!("max_open of well `{}`: {open} gates open, {most} allowed", well.name),
+                "open fewer of its gates",
+            );
         }
     }
     let total = release.flow_m3s;
     if let Some(least) = site.release.min_m3s
         && total < least * (1.0 - 1e-9)
     {
-        broken(format!("release.min: {total:.2} m3/s in total, {least:.2} m3/s asked for"));
+        broken(
+            format!("release.min: {} in total, {} required", say::m3s(total, 2), say::m3s(least, 2)),
+            "release more",
+        );
     }
     if let Some(most) = site.release.max_m3s
         && total > most * (1.0 + 1e-9)
     {
-        broken(format!("release.max: {total:.2} m3/s in total, {most:.2} m3/s allowed"));
+        broken(
+            format!("release.max: {} in total, {} allowed", say::m3s(total, 2), say::m3s(most, 2)),
+            "release less",
+        );
     }
 }
 
@@ -261,10 +295,10 @@ fn zones(site: &Site, column: &Column, drawn: &[Drawn], warnings: &mut Vec<Probl
                 warnings.push(Problem::flag(
                     "mixed-layer-limit",
                     format!(
-                        "the {what} limit of {name} ({:.2} m) lies in mixed water: nothing physical stops it there",
-                        side.limit_m
+                        "the {what} limit of the zone of {name} ({}) lies in mixed water, where nothing holds it",
+                        say::m(side.limit_m, 2)
                     ),
-                    "",
+                    "read this limit as a guess",
                 ));
             }
         }
@@ -275,7 +309,8 @@ fn zones(site: &Site, column: &Column, drawn: &[Drawn], warnings: &mut Vec<Probl
             warnings.push(Problem::flag(
                 "thin-zone",
                 format!(
-                    "the zone of {name} reaches {reach:.1} m, less than {THIN_HEIGHTS:.0} opening heights: a point sink is a rough picture of it"
+                    "the zone of {name} reaches only {} from its centre, less than {THIN_HEIGHTS:.0} opening heights: its computed shape is rough",
+                    say::m(reach, 1)
                 ),
                 "",
             ));
@@ -284,7 +319,7 @@ fn zones(site: &Site, column: &Column, drawn: &[Drawn], warnings: &mut Vec<Probl
     if !column.has_width() {
         warnings.push(Problem::note(
             "width-assumed",
-            "no widths in the pool table: the pool is taken as equally wide at every elevation",
+            "the pool table gives no widths: the pool is taken as equally wide at every elevation",
         ));
     }
 }
@@ -298,8 +333,8 @@ fn overlaps(column: &Column, drawn: &[Drawn], release: &Blend, warnings: &mut Ve
         warnings.push(Problem::flag(
             "zones-overlap",
             format!(
-                "levels lie inside each other's zones; as one sink they would give {:+.2} C; the difference is in the band",
-                joined.temperature_c - release.temperature_c
+                "open levels draw from each other's zones; taken as one sink they would change the release by {}, which the band includes",
+                say::dc(joined.temperature_c - release.temperature_c, 1).signed()
             ),
             "",
         ));
@@ -311,10 +346,10 @@ fn oxygen(site: &Site, drawn: &[Drawn], release: &Blend, warnings: &mut Vec<Prob
         let Some(draw) = &d.draw else { continue };
         if draw.oxygen_mg_l.is_none() {
             let words = if draw.oxygen_missing_share >= 1.0 - 1e-9 {
-                format!("no oxygen reading reaches the zone of {}", level_name(site, d))
+                format!("there is no oxygen reading in the zone of {}", level_name(site, d))
             } else {
                 format!(
-                    "{:.0} % of the water of {} comes from where no oxygen reading reaches",
+                    "{:.0} % of the water of {} comes from where there is no oxygen reading",
                     100.0 * draw.oxygen_missing_share,
                     level_name(site, d)
                 )
@@ -322,7 +357,7 @@ fn oxygen(site: &Site, drawn: &[Drawn], release: &Blend, warnings: &mut Vec<Prob
             warnings.push(Problem::flag(
                 "oxygen-missing",
                 format!("{words}: release oxygen stays unknown"),
-                "",
+                "measure oxygen over the whole depth next time",
             ));
         }
     }
@@ -330,10 +365,10 @@ fn oxygen(site: &Site, drawn: &[Drawn], release: &Blend, warnings: &mut Vec<Prob
         warnings.push(Problem::flag(
             "oxygen-upper-bound",
             format!(
-                "{:.0} % of the release comes from water below 1 mg/L: sulphide, iron and manganese take up oxygen after mixing, so the figure is an upper bound",
+                "{:.0} % of the release comes from water below 1 mg/L, whose sulphide, iron and manganese take up oxygen after mixing",
                 100.0 * release.oxygen_low_share
             ),
-            "",
+            "read the release oxygen as an upper bound",
         ));
     }
 }
@@ -343,8 +378,8 @@ fn cautions(site: &Site, column: &Column, drawn: &[Drawn], warnings: &mut Vec<Pr
     if spills {
         warnings.push(Problem::flag(
             "dissolved-gas",
-            "spill takes up air: watch total dissolved gas below the dam (110 % is the usual criterion); not predicted",
-            "",
+            "spill takes up air; total dissolved gas is not predicted",
+            "measure it below the dam (110 % is the usual criterion)",
         ));
     }
     if let (Some(latitude), Some(width)) = (site.place.latitude_deg, site.pool.width_m(column.surface_m())) {
@@ -356,7 +391,7 @@ fn cautions(site: &Site, column: &Column, drawn: &[Drawn], warnings: &mut Vec<Pr
         if coriolis > 0.0 && buoyancy * (surface - bed) / (PI * coriolis) < width {
             warnings.push(Problem::flag(
                 "rotation",
-                "the pool is wide enough for the Earth's rotation to matter: zones may be thicker than computed",
+                "the pool is so wide that the Earth's rotation matters: zones may be thicker than computed",
                 "",
             ));
         }

@@ -7,6 +7,7 @@ use chrono::{DateTime, FixedOffset};
 
 use crate::problem::{Problem, any_refused};
 use crate::site::Site;
+use crate::units::say;
 use crate::water;
 
 use super::column::{Column, OxygenSample, Sample, Source, Widths};
@@ -151,11 +152,7 @@ fn build(raw: &Raw, site: &Site, pool_m: Option<f64>, problems: &mut Vec<Problem
     if !(site.pool.bed_m..=site.pool.top_m()).contains(&pool) || pool <= site.pool.bed_m {
         problems.push(Problem::refused(
             "pool-outside",
-            format!(
-                "pool {pool:.2} m lies outside the site's table ({:.2} to {:.2} m)",
-                site.pool.bed_m,
-                site.pool.top_m()
-            ),
+            format!("pool {} lies outside the pool table ({})", say::m(pool, 2), site.pool.extent()),
             "check the elevation, its unit and its datum",
         ));
         return None;
@@ -163,8 +160,8 @@ fn build(raw: &Raw, site: &Site, pool_m: Option<f64>, problems: &mut Vec<Problem
     if pool > site.pool.full_m + 1e-9 {
         problems.push(Problem::flag(
             "pool-above-full",
-            format!("pool {pool:.2} m stands above full pool {:.2} m", site.pool.full_m),
-            "check the elevation if this is no flood",
+            format!("pool {} is above full pool {}", say::m(pool, 2), say::m(site.pool.full_m, 2)),
+            "check the elevation unless this is a flood",
         ));
     }
     for row in &raw.rows {
@@ -185,13 +182,22 @@ fn possible(row: &RawRow, problems: &mut Vec<Problem>) {
         && !WATER_C.contains(&t)
     {
         let cure = if (32.0..=113.0).contains(&t) {
-            "name the column temperature_F if these are Fahrenheit"
+            "name the column temperature_F if the figures are Fahrenheit"
         } else {
             "blank the cell if the sensor failed"
         };
         problems.push(
-            Problem::refused("temperature-range", format!("water of {t:.2} C is outside -1 to 45 C"), cure)
-                .on_line(row.line),
+            Problem::refused(
+                "temperature-range",
+                format!(
+                    "water of {} is outside {} to {}",
+                    say::c(t, 2),
+                    say::c(*WATER_C.start(), 0),
+                    say::c(*WATER_C.end(), 0)
+                ),
+                cure,
+            )
+            .on_line(row.line),
         );
     }
     let negative = [
@@ -218,8 +224,8 @@ fn possible(row: &RawRow, problems: &mut Vec<Problem>) {
         problems.push(
             Problem::refused(
                 "oxygen-range",
-                "oxygen above 40 mg/L is not water's",
-                "name the column oxygen_percent if these are percent of saturation",
+                "oxygen above 40 mg/L cannot be",
+                "name the column oxygen_percent if the figures are percent of saturation",
             )
             .on_line(row.line),
         );
@@ -245,13 +251,9 @@ fn place(raw: &Raw, site: &Site, pool: f64, problems: &mut Vec<Problem>) -> Opti
         let depths = raw.rows.iter().any(|r| r.elevation_m.is_some());
         problems.push(Problem::refused(
             "elevations-outside",
-            format!(
-                "every sample lies outside bed to top of the pool table ({:.2} to {:.2} m)",
-                site.pool.bed_m,
-                site.pool.top_m()
-            ),
+            format!("every sample lies outside the pool table ({})", site.pool.extent()),
             if depths {
-                "name the column depth_m or depth_ft if these are depths"
+                "name the column depth_m or depth_ft if the figures are depths"
             } else {
                 "check depths and units"
             },
@@ -266,11 +268,11 @@ fn place(raw: &Raw, site: &Site, pool: f64, problems: &mut Vec<Problem>) -> Opti
             Problem::flag(
                 "exposed",
                 format!(
-                    "{} sample(s) above the water (highest {:.2} m above the pool) left out",
+                    "{} sample(s) above the water left out, the highest by {}",
                     above.len(),
-                    highest - pool
+                    say::m(highest - pool, 2)
                 ),
-                "check depths and the pool elevation; a sensor may hang in the air",
+                "check depths and pool elevation; a sensor may hang in the air",
             )
             .on_line(first.row.line),
         );
@@ -282,11 +284,11 @@ fn place(raw: &Raw, site: &Site, pool: f64, problems: &mut Vec<Problem>) -> Opti
             Problem::flag(
                 "below-bed",
                 format!(
-                    "{} sample(s) below the bed (lowest by {:.2} m)",
+                    "{} sample(s) below the bed, the lowest by {}",
                     below.len(),
-                    site.pool.bed_m - deepest
+                    say::m(site.pool.bed_m - deepest, 2)
                 ),
-                "check depths, the pool elevation and the bed of the site file",
+                "check depths, pool elevation and the bed in the site file",
             )
             .on_line(first.row.line),
         );
@@ -296,8 +298,8 @@ fn place(raw: &Raw, site: &Site, pool: f64, problems: &mut Vec<Problem>) -> Opti
     if usable < 2 {
         problems.push(Problem::refused(
             "too-few",
-            format!("{usable} usable sample(s)"),
-            "a profile needs at least two depths with a temperature",
+            format!("the cast has {usable} usable sample(s)"),
+            "give at least two depths with a temperature",
         ));
         return None;
     }
@@ -319,12 +321,13 @@ fn order(placed: &mut [Placed], problems: &mut Vec<Problem>) {
     }
     if let Some(&first) = turns.first() {
         let words = if turns.len() == 1 {
-            "the cast turns round here: both ways are used, in order of depth".to_owned()
+            "the cast turns round here; both ways are used, sorted by depth".to_owned()
         } else {
-            format!("rows out of order of depth ({} turns); put in order", turns.len())
+            format!("the rows are not in order of depth ({} turns); sorted", turns.len())
         };
-        problems
-            .push(Problem::flag("order", words, "split a down and an up cast into two files").on_line(first));
+        problems.push(
+            Problem::flag("order", words, "put the way down and the way up into two files").on_line(first),
+        );
     }
     placed.sort_by(|a, b| a.z.total_cmp(&b.z).then(a.row.line.cmp(&b.row.line)));
 }
@@ -339,12 +342,16 @@ fn pool_duplicates(placed: &[Placed], problems: &mut Vec<Problem>) -> Vec<Placed
             let spread = temperatures().fold(f64::NEG_INFINITY, f64::max)
                 - temperatures().fold(f64::INFINITY, f64::min);
             let words = if spread.is_finite() {
-                format!("{} rows at one depth, {spread:.2} C apart; their mean is used", group.len())
+                format!(
+                    "{} rows at one depth, up to {} apart; their mean is used",
+                    group.len(),
+                    say::dc(spread, 2)
+                )
             } else {
                 format!("{} rows at one depth; their mean is used", group.len())
             };
             problems.push(
-                Problem::flag("duplicate", words, "keep one reading a depth if they should not be pooled")
+                Problem::flag("duplicate", words, "keep one row if they should not be averaged")
                     .on_line(first.row.line),
             );
         }
@@ -408,12 +415,12 @@ fn finish(
         problems.push(Problem::refused(
             "upside-down",
             format!(
-                "surface water ({:.2} C) is denser than bed water ({:.2} C) by {:.2} kg/m3",
-                top.temperature_c,
-                bottom.temperature_c,
+                "surface water ({}) is denser than bed water ({}) by {:.2} kg/m3",
+                say::c(top.temperature_c, 2),
+                say::c(bottom.temperature_c, 2),
                 density(top) - density(bottom)
             ),
-            "depths and elevations may be exchanged in the header",
+            "check that the header does not call depths elevations, or elevations depths",
         ));
         return None;
     }

@@ -6,7 +6,7 @@ use chrono::FixedOffset;
 
 use crate::problem::{Problem, any_refused};
 use crate::target::{Span, Statistic, Target, YearDay};
-use crate::units::Datum;
+use crate::units::{Datum, say};
 
 use super::{
     Kind, Outlet, Pool, Raw, RawOutlet, RawTarget, ReleaseLimits, SetNow, Shape, Site, Well, Whereabouts,
@@ -55,8 +55,12 @@ impl Site {
             && min > max
         {
             problems.push(
-                Problem::refused("release-order", "least release lies above the most", "swap them")
-                    .at("release.min"),
+                Problem::refused(
+                    "release-order",
+                    format!("release.min {} is above release.max {}", say::m3s(min, 2), say::m3s(max, 2)),
+                    "swap them",
+                )
+                .at("release.min"),
             );
         }
         let targets: Vec<Option<Target>> =
@@ -98,7 +102,7 @@ fn offset(raw: &Raw, problems: &mut Vec<Problem>) -> FixedOffset {
     let read = match raw.utc_offset.as_deref() {
         None => {
             problems.push(
-                Problem::note("offset-assumed", "no utc_offset given: times without one are read as UTC")
+                Problem::note("offset-assumed", "no utc_offset given: times that carry none are read as UTC")
                     .at("utc_offset"),
             );
             utc
@@ -109,7 +113,7 @@ fn offset(raw: &Raw, problems: &mut Vec<Problem>) -> FixedOffset {
                 problems.push(
                     Problem::refused(
                         "offset",
-                        format!("utc_offset `{text}` is not an offset"),
+                        format!("`{text}` is not an offset from UTC"),
                         "write it as \"-07:00\" (standard time, all year)",
                     )
                     .at("utc_offset"),
@@ -144,27 +148,36 @@ fn parse_offset(text: &str) -> Option<FixedOffset> {
 }
 
 fn place(raw: &Raw, problems: &mut Vec<Problem>) -> Whereabouts {
-    if raw.altitude_m.is_some_and(|a| !ALTITUDE_M.contains(&a)) {
+    if let Some(altitude_m) = raw.altitude_m.filter(|a| !ALTITUDE_M.contains(a)) {
         problems.push(
             Problem::refused(
                 "altitude",
-                "altitude is not one of settled land",
-                "give metres (or ft) above sea level",
+                format!(
+                    "altitude {} lies outside {} to {}",
+                    say::m(altitude_m, 0),
+                    say::m(*ALTITUDE_M.start(), 0),
+                    say::m(*ALTITUDE_M.end(), 0)
+                ),
+                "give the altitude of elevation 0 above sea level; check its unit",
             )
             .at("place.altitude"),
         );
     }
     if raw.latitude_deg.is_some_and(|l| !(-90.0..=90.0).contains(&l)) {
         problems.push(
-            Problem::refused("latitude", "latitude lies outside -90 to 90 degrees", "give degrees north")
-                .at("place.latitude"),
+            Problem::refused(
+                "latitude",
+                "latitude lies outside -90 to 90 degrees",
+                "give degrees, north positive",
+            )
+            .at("place.latitude"),
         );
     }
     if raw.altitude_m.is_none() {
         problems.push(
             Problem::note(
                 "altitude-unknown",
-                "no place.altitude given: oxygen saturation is taken at sea-level pressure",
+                "no place.altitude given: oxygen saturation is that of sea level",
             )
             .at("place"),
         );
@@ -183,7 +196,7 @@ fn names(raw: &Raw, problems: &mut Vec<Problem>) {
                 Problem::refused(
                     "name",
                     format!("`{name}` cannot name an outlet or a well"),
-                    "use a name without `=`, `%` or `,`: it is typed on the command line",
+                    "give a name without `=`, `%` or `,`: it is typed on the command line",
                 )
                 .at(format!("{path}.name")),
             );
@@ -244,12 +257,8 @@ fn wells(raw: &Raw, pool: Option<&Pool>, problems: &mut Vec<Problem>) -> Vec<Opt
             problems.push(
                 Problem::refused(
                     "outside-pool",
-                    format!(
-                        "conduit {conduit:.2} m lies outside the pool ({:.2} to {:.2} m)",
-                        pool.bed_m,
-                        pool.top_m()
-                    ),
-                    "check the elevation and its datum",
+                    format!("conduit {} lies outside the pool ({})", say::m(conduit, 2), pool.extent()),
+                    "check the elevation, its unit and its datum",
                 )
                 .at(at("conduit")),
             );
@@ -260,7 +269,7 @@ fn wells(raw: &Raw, pool: Option<&Pool>, problems: &mut Vec<Problem>) -> Vec<Opt
                 problems.push(
                     Problem::refused(
                         "max-open",
-                        "max_open is not a count of gates",
+                        "max_open must count gates",
                         "give a whole number, 1 or more",
                     )
                     .at(at("max_open")),
@@ -317,15 +326,20 @@ fn outlet(
         && min > max
     {
         problems.push(
-            Problem::refused("flow-order", "flow.min lies above flow.max", "swap them").at(at("flow.min")),
+            Problem::refused(
+                "flow-order",
+                format!("flow.min {} is above flow.max {}", say::m3s(min, 2), say::m3s(max, 2)),
+                "swap them",
+            )
+            .at(at("flow.min")),
         );
     }
     if o.angle_deg.is_some_and(|a| !(0.0..=360.0).contains(&a) || a == 0.0) {
         problems.push(
             Problem::refused(
                 "angle",
-                "the withdrawal angle is above 0 and at most 360 degrees",
-                "180 for a straight face, 360 for a free-standing tower, 90 in a corner",
+                "the withdrawal angle must be above 0 and at most 360 degrees",
+                "give 180 for a straight face, 360 for a free-standing tower, 90 in a corner",
             )
             .at(at("angle")),
         );
@@ -338,8 +352,8 @@ fn outlet(
             problems.push(
                 Problem::refused(
                     "leak-range",
-                    "the leakage range does not hold its flow",
-                    "give [least, most] around leakage.flow",
+                    "leakage.flow lies outside leakage.range",
+                    "give the range as [least, most] around the flow",
                 )
                 .at(at("leakage.range")),
             );
@@ -385,13 +399,13 @@ fn outlet(
             Problem::refused(
                 "outside-pool",
                 format!(
-                    "`{}` (sill {:.2} m, centre {centre_m:.2} m) lies outside the pool ({:.2} to {:.2} m)",
+                    "`{}` (sill {}, centre {}) lies outside the pool ({})",
                     built.name,
-                    built.sill_m(),
-                    pool.bed_m,
-                    pool.top_m()
+                    say::m(built.sill_m(), 2),
+                    say::m(centre_m, 2),
+                    pool.extent()
                 ),
-                "check the elevation and its datum",
+                "check the elevation, its unit and its datum",
             )
             .at(at("centre")),
         );
@@ -405,15 +419,15 @@ fn orifice_kind(o: &RawOutlet, i: usize, problems: &mut Vec<Problem>) -> Option<
         None
     };
     if o.gated.is_some() || !o.rating.is_empty() {
-        return refuse("kind", "`gated` and `rating` speak of a crest", "add `kind: crest`, or drop them");
+        return refuse("kind", "`gated` and `rating` belong to a crest", "add `kind: crest`, or drop them");
     }
     match (o.height_m, o.width_m, o.diameter_m) {
         (Some(height_m), Some(width_m), None) => Some(Kind::Orifice(Shape::Rectangle { height_m, width_m })),
         (None, None, Some(diameter_m)) => Some(Kind::Orifice(Shape::Circle { diameter_m })),
         (_, _, Some(_)) => refuse(
             "diameter",
-            "both a diameter and a height or width",
-            "give a diameter, or height and width",
+            "the outlet has a diameter and a height or width",
+            "give the diameter alone, or height and width",
         ),
         (None, _, None) => refuse("height", "height is missing", "give height and width, or a diameter"),
         (_, None, None) => refuse("width", "width is missing", "give height and width, or a diameter"),
@@ -437,8 +451,8 @@ fn crest_kind(o: &RawOutlet, i: usize, problems: &mut Vec<Problem>) -> Option<Ki
         problems.push(
             Problem::refused(
                 "rating",
-                "the rating needs two or more rows [head, flow] that rise",
-                "order them by head",
+                "the rating needs at least two rows, with head and flow rising",
+                "list rows [head, flow] from the lowest head up",
             )
             .at(at("rating")),
         );
@@ -461,7 +475,7 @@ fn positions(o: &RawOutlet, i: usize, crest: bool, problems: &mut Vec<Problem>) 
                 Problem::refused(
                     "position",
                     format!("position `{}` lies outside 0 to 100 %", p.name),
-                    "give percent of the full height",
+                    "give percent of the full opening",
                 )
                 .at(path.clone()),
             );
@@ -480,7 +494,7 @@ fn positions(o: &RawOutlet, i: usize, crest: bool, problems: &mut Vec<Problem>) 
             problems.push(
                 Problem::refused(
                     "position",
-                    format!("position `{}` stands twice", p.name),
+                    format!("position `{}` is listed twice", p.name),
                     "list each position once",
                 )
                 .at(path),
@@ -499,7 +513,7 @@ fn mixed_losses(raw: &Raw, problems: &mut Vec<Problem>) {
             problems.push(
                 Problem::refused(
                     "mixed-loss",
-                    format!("in well `{name}` {given} of {} gates give a loss", ports.len()),
+                    format!("{given} of {} gates of well `{name}` give a loss", ports.len()),
                     "give `loss` for all gates of the well, or for none",
                 )
                 .at(format!("wells[{i}]")),
@@ -509,8 +523,8 @@ fn mixed_losses(raw: &Raw, problems: &mut Vec<Problem>) {
             problems.push(
                 Problem::flag(
                     "empty-well",
-                    format!("no outlet stands on well `{name}`"),
-                    "name it in an outlet's `well`",
+                    format!("no outlet belongs to well `{name}`"),
+                    "name it in an outlet's `well`, or drop the well",
                 )
                 .at(format!("wells[{i}]")),
             );
@@ -625,8 +639,9 @@ fn now(raw: &Raw, outlets: &[Option<Outlet>], problems: &mut Vec<Problem>) -> Ve
 fn spread(raw: &Raw, problems: &mut Vec<Problem>) {
     let b = &raw.band;
     if !(10..=10_000).contains(&b.members) {
-        problems
-            .push(Problem::refused("band", "members must be 10 to 10000", "200 serves").at("band.members"));
+        problems.push(
+            Problem::refused("band", "members must be 10 to 10000", "200 is enough").at("band.members"),
+        );
     }
     let spreads = [
         (b.cast_c, "cast"),
@@ -643,8 +658,12 @@ fn spread(raw: &Raw, problems: &mut Vec<Problem>) {
     }
     if b.zone_low <= 0.0 || b.zone_low > 1.0 || b.zone_high < 1.0 {
         problems.push(
-            Problem::refused("band", "the zone factor's range must hold 1", "the default is [0.70, 1.15]")
-                .at("band.zone"),
+            Problem::refused(
+                "band",
+                "the range of the zone factor must include 1",
+                "the default is [0.70, 1.15]",
+            )
+            .at("band.zone"),
         );
     }
     let c = &raw.checks;
@@ -666,7 +685,7 @@ fn spread(raw: &Raw, problems: &mut Vec<Problem>) {
             Problem::refused(
                 "solids",
                 "suspended solids must be denser than water",
-                "2650 kg/m3 serves for mineral silt",
+                "mineral silt is about 2650 kg/m3",
             )
             .at("water.solids_density"),
         );
