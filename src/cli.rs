@@ -9,8 +9,8 @@ use chrono::{DateTime, Utc};
 use clap::{Args, CommandFactory, Parser, Subcommand, ValueEnum};
 
 use crate::files::atomic;
-use crate::files::folder::{check, demonstration_files};
-use crate::problem::{Problem, any_refused};
+use crate::files::folder::{check, demonstration_files, demonstrations};
+use crate::problem::{Problem, any_refused, harmless};
 use crate::report::{json, text};
 use crate::tasks::{self, Asked, Failure};
 use crate::units::System;
@@ -201,9 +201,7 @@ impl From<Failure> for Stop {
 
 fn failed(stop: &Stop) -> (String, End) {
     match stop {
-        Stop::Task(Failure::Usage(words)) => {
-            (format!("gatemix: {}\n", crate::problem::harmless(words)), End::Usage)
-        }
+        Stop::Task(Failure::Usage(words)) => (format!("gatemix: {}\n", harmless(words)), End::Usage),
         Stop::Task(Failure::Refused(problems)) => {
             let lines: Vec<String> = problems.iter().map(ToString::to_string).collect();
             (lines.join("\n") + "\n", End::Refused)
@@ -291,10 +289,11 @@ fn demo(folder: &Path) -> Result<String, Stop> {
         }
         atomic::write(&target, bytes).map_err(Stop::Machine)?;
     }
+    let first = demonstrations().first().copied().unwrap_or_default();
     Ok(format!(
         "wrote {} files below {}; try: gatemix pool {}\n",
         files.len(),
-        folder.display(),
-        folder.join(crate::files::folder::demonstrations().first().copied().unwrap_or_default()).display()
+        harmless(&folder.display().to_string()),
+        harmless(&folder.join(first).display().to_string())
     ))
 }

@@ -230,7 +230,10 @@ impl<'d> Map<'d> {
 
     /// A key that may be absent. A key left blank counts as absent.
     pub fn optional(&self, key: &'static str) -> Option<Value<'d>> {
-        self.asked.borrow_mut().push(key);
+        let mut asked = self.asked.borrow_mut();
+        if !asked.contains(&key) {
+            asked.push(key);
+        }
         let (_, node) = self.entries.iter().find(|(name, _)| name == key)?;
         (*node != Node::Null).then(|| self.at(key, node))
     }

@@ -11,6 +11,7 @@ use crate::site::Site;
 
 use super::cast::{Told, cast};
 use super::text::{self, Format, Source};
+use super::yaml::Document;
 
 static DEMONSTRATIONS: Dir<'static> = include_dir!("$CARGO_MANIFEST_DIR/sites");
 
@@ -150,10 +151,30 @@ impl Folder {
         casts
     }
 
+    /// What a folder lacks that its site file counts on: any cast at all, and each cast it lists.
+    fn casts_said(&self, found: &[Listed]) -> Vec<Problem> {
+        let mut out = Vec::new();
+        if found.is_empty() {
+            out.push(Problem::note("no-cast", "there is no cast in `profiles`"));
+        }
+        for (i, listed) in self.site.casts.iter().enumerate() {
+            if !found.iter().any(|f| f.file == listed.file || base(&f.file) == listed.file) {
+                let words = format!("there is no cast `{}` in `profiles`", listed.file);
+                out.push(
+                    Problem::flag("cast-missing", words, "correct the name, or take it out of the list")
+                        .at(format!("casts[{i}].file")),
+                );
+            }
+        }
+        if let Ok(document) = Document::parse(&self.source.text) {
+            document.locate(&mut out, &self.source.name);
+        }
+        out
+    }
+
     /// What the site file says of a cast of that file name.
     fn told(&self, name: &str) -> Told {
-        let base = Path::new(name).file_name().and_then(|n| n.to_str()).unwrap_or(name);
-        let listed = self.site.casts.iter().find(|c| c.file == name || c.file == base);
+        let listed = self.site.casts.iter().find(|c| c.file == name || c.file == base(name));
         listed.map_or_else(Told::default, |c| Told { taken: c.taken.clone(), pool_m: c.pool_m })
     }
 
@@ -296,6 +317,11 @@ impl Folder {
     }
 }
 
+/// The last part of a path, as the user lists it.
+fn base(name: &str) -> &str {
+    Path::new(name).file_name().and_then(|n| n.to_str()).unwrap_or(name)
+}
+
 fn is_csv(path: &Path) -> bool {
     path.extension().is_some_and(|e| e.eq_ignore_ascii_case("csv"))
 }
@@ -312,8 +338,10 @@ pub fn check(named: &str) -> Vec<Problem> {
         Err(problems) => problems,
         Ok(folder) => {
             let mut problems = folder.notes.clone();
-            for listed in folder.casts() {
-                problems.extend(folder.profile_of(&listed).1);
+            let casts = folder.casts();
+            problems.extend(folder.casts_said(&casts));
+            for listed in &casts {
+                problems.extend(folder.profile_of(listed).1);
             }
             problems
         }

@@ -1,5 +1,7 @@
 //! `site.yaml` into a raw site: every unknown key, wrong type and unit at once, each with its line.
 
+use chrono::{Offset, Utc};
+
 use crate::problem::{Problem, any_refused};
 use crate::site::{
     Leakage, ListedCast, Opens, Position, Raw, RawOutlet, RawPool, RawRow, RawTarget, RawWell, SetNow, Site,
@@ -7,7 +9,7 @@ use crate::site::{
 };
 use crate::units::{Dimension, Folder};
 
-use super::cast::Column;
+use super::cast::{Column, TIME_CURE, parse_time};
 use super::cursor::{Map, Scalar, Value, Walk};
 use super::yaml::{Document, Node};
 
@@ -40,7 +42,19 @@ struct In {
 impl In {
     fn quantity(&self, value: &Value, dimension: Dimension) -> Option<f64> {
         match value.scalar()? {
-            Scalar::Number(number) => Some(self.units.to_si(number, dimension)),
+            Scalar::Number(number) => {
+                let si = self.units.to_si(number, dimension);
+                if si.is_finite() {
+                    return Some(si);
+                }
+                let unit = self.units.unit(dimension);
+                value.report(Problem::refused(
+                    "quantity",
+                    format!("{number:e} {unit} is too large a {dimension}"),
+                    "correct the figure",
+                ));
+                None
+            }
             Scalar::Text(text) => match self.units.parse(text, dimension) {
                 Ok(si) => Some(si),
                 Err(error) => {
@@ -149,12 +163,21 @@ fn raw_site(map: Map) -> Raw {
     });
     raw.casts = each(&map, "casts", |m| ListedCast {
         file: m.required("file").and_then(|v| v.text()).unwrap_or_default().to_owned(),
-        taken: text(m, "taken"),
+        taken: m.optional("taken").and_then(|v| taken(&v)),
         pool_m: read.optional(m, "pool", Dimension::Length),
     });
     raw.demonstration = map.optional("demonstration").and_then(|v| v.boolean()).unwrap_or(false);
     map.finish();
     raw
+}
+
+/// When a listed cast was taken. It is read once the offset is known; here only that such a moment exists.
+fn taken(value: &Value) -> Option<String> {
+    let text = value.text()?;
+    if let Err(words) = parse_time(text, Utc.fix()) {
+        value.report(Problem::refused("time", words, TIME_CURE));
+    }
+    Some(text.to_owned())
 }
 
 /// One of our column names, as a logger's header is mapped to it.
