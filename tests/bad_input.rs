@@ -6,6 +6,8 @@
 mod atomic;
 #[path = "bad_input/cursor.rs"]
 mod cursor;
+#[path = "bad_input/docs.rs"]
+mod docs;
 #[path = "bad_input/laws.rs"]
 mod laws;
 #[path = "bad_input/table.rs"]
