@@ -10,6 +10,8 @@ mod cursor;
 mod docs;
 #[path = "bad_input/laws.rs"]
 mod laws;
+#[path = "bad_input/mutated.rs"]
+mod mutated;
 #[path = "bad_input/table.rs"]
 mod table;
 #[path = "bad_input/text.rs"]
