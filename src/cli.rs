@@ -162,29 +162,35 @@ pub fn run_at(
         Err(error) => {
             let end = if error.use_stderr() { End::Usage } else { End::Answered };
             let words = error.render().to_string();
-            let written = if end == End::Usage {
-                err.write_all(words.as_bytes())
-            } else {
-                out.write_all(words.as_bytes())
+            return match end {
+                End::Usage => said(&words, end, err),
+                _ => finished(words.as_bytes(), end, out, err),
             };
-            return finished(written, end);
         }
     };
     match answer(&cli, clock) {
-        Ok((bytes, end)) => finished(out.write_all(&bytes).and_then(|()| out.flush()), end),
+        Ok((bytes, end)) => finished(&bytes, end, out, err),
         Err(failure) => {
             let (words, end) = failed(&failure);
-            finished(err.write_all(words.as_bytes()), end)
+            said(&words, end, err)
         }
     }
 }
 
-/// A closed pipe is no error; anything else that stops the writing is.
-fn finished(written: std::io::Result<()>, end: End) -> ExitCode {
-    match written {
-        Err(error) if error.kind() != std::io::ErrorKind::BrokenPipe => End::Failed.into(),
+/// Writes the answer. A closed pipe is no error; anything else that stops the writing is.
+fn finished(bytes: &[u8], end: End, out: &mut dyn Write, err: &mut dyn Write) -> ExitCode {
+    match out.write_all(bytes).and_then(|()| out.flush()) {
+        Err(error) if error.kind() != std::io::ErrorKind::BrokenPipe => {
+            said(&format!("gatemix: the answer cannot be written: {error}\n"), End::Failed, err)
+        }
         _ => end.into(),
     }
+}
+
+/// Writes why there is none. Where even that cannot be written, the exit code is all that is left.
+fn said(words: &str, end: End, err: &mut dyn Write) -> ExitCode {
+    _ = err.write_all(words.as_bytes());
+    end.into()
 }
 
 /// Why there is no answer: of the command line, of the files, or of the machine.
