@@ -9,7 +9,8 @@ use chrono::{DateTime, Utc};
 use clap::{Args, CommandFactory, Parser, Subcommand, ValueEnum};
 
 use crate::files::atomic;
-use crate::files::folder::{check, demonstration_files};
+use crate::files::folder::{demonstration_files, demonstrations};
+use crate::mix::TargetStanding;
 use crate::problem::{Problem, any_refused};
 use crate::report::{json, text};
 use crate::tasks::{self, Asked, Failure};
@@ -204,8 +205,8 @@ fn failed(stop: &Stop) -> (String, End) {
         Stop::Task(Failure::Usage(words)) => {
             (format!("gatemix: {}\n", crate::problem::harmless(words)), End::Usage)
         }
-        Stop::Task(Failure::Refused(problems)) => {
-            let lines: Vec<String> = problems.iter().map(ToString::to_string).collect();
+        Stop::Task(Failure::Refused(problems, system)) => {
+            let lines: Vec<String> = problems.iter().map(|p| p.text(*system)).collect();
             (lines.join("\n") + "\n", End::Refused)
         }
         Stop::Machine(problem) => (format!("{problem}\n"), End::Failed),
@@ -231,12 +232,12 @@ fn answer(cli: &Cli, clock: DateTime<Utc>) -> Result<(Vec<u8>, End), Stop> {
             let context = tasks::open(&common.asked(), clock)?;
             let answer = tasks::mix(&context, set)?;
             let shown = if common.json { json::mix(&context, &answer) } else { text::mix(&context, &answer) };
-            let missed = *strict && answer.mix.targets.iter().any(tasks_missed);
+            let missed = *strict && answer.mix.targets.iter().any(TargetStanding::missed);
             Ok((shown.into_bytes(), if missed { End::Missed } else { End::Answered }))
         }
         Some(Command::Check { site, json }) => {
-            let problems = check(site);
-            let shown = if *json { json::check(&problems) } else { text::check(site, &problems) };
+            let (problems, system) = tasks::check(site);
+            let shown = if *json { json::check(&problems) } else { text::check(site, &problems, system) };
             let end = if any_refused(&problems) { End::Refused } else { End::Answered };
             Ok((shown.into_bytes(), end))
         }
@@ -255,10 +256,6 @@ fn answer(cli: &Cli, clock: DateTime<Utc>) -> Result<(Vec<u8>, End), Stop> {
             }
         }
     }
-}
-
-fn tasks_missed(standing: &crate::mix::TargetStanding) -> bool {
-    standing.missed()
 }
 
 /// Writes the demonstration sites below a folder. A file that is there with other contents is left alone and stops
@@ -295,6 +292,6 @@ fn demo(folder: &Path) -> Result<String, Stop> {
         "wrote {} files below {}; try: gatemix pool {}\n",
         files.len(),
         folder.display(),
-        folder.join(crate::files::folder::demonstrations().first().copied().unwrap_or_default()).display()
+        folder.join(demonstrations().first().copied().unwrap_or_default()).display()
     ))
 }

@@ -5,9 +5,10 @@ use std::path::{Path, PathBuf};
 use include_dir::{Dir, include_dir};
 use sha2::{Digest, Sha256};
 
-use crate::problem::{Problem, any_refused};
+use crate::problem::Problem;
 use crate::profile::{Profile, Raw};
 use crate::site::Site;
+use crate::units::System;
 
 use super::cast::{Told, cast};
 use super::text::{self, Format, Source};
@@ -306,21 +307,16 @@ fn inside(file: &str) -> Option<Result<Source, Problem>> {
     Some(text::read_from(file, contents, format))
 }
 
-/// Every problem of a site folder: the site file, then each cast.
-pub fn check(named: &str) -> Vec<Problem> {
+/// Every problem of a site folder: the site file, then each cast; and the units its user reads.
+pub fn check(named: &str) -> (Vec<Problem>, System) {
     match Folder::open(named) {
-        Err(problems) => problems,
+        Err(problems) => (problems, System::default()),
         Ok(folder) => {
             let mut problems = folder.notes.clone();
             for listed in folder.casts() {
                 problems.extend(folder.profile_of(&listed).1);
             }
-            problems
+            (problems, folder.site.units.system())
         }
     }
-}
-
-/// Whether a folder can be used.
-pub fn is_sound(problems: &[Problem]) -> bool {
-    !any_refused(problems)
 }
