@@ -108,6 +108,30 @@ enum Colour {
     Never,
 }
 
+/// Words that tell of a miss; they stand in capitals, so weight only helps the eye.
+const MISSES: [&str; 5] = ["ABOVE", "BELOW", "UNKNOWN", "DRY", "SHORT"];
+
+impl Colour {
+    /// The text with the release and every miss in bold. The stream strips it where there is no terminal.
+    fn of(self, text: &str) -> String {
+        if matches!(self, Self::Never) {
+            return text.to_owned();
+        }
+        let bold = |words: &str| format!("\u{1b}[1m{words}\u{1b}[0m");
+        let mut out = String::with_capacity(text.len() + 64);
+        for line in text.split_inclusive('\n') {
+            let (line, end) = line.strip_suffix('\n').map_or((line, ""), |l| (l, "\n"));
+            if line.starts_with("Release  ") {
+                out.push_str(&bold(line));
+            } else {
+                out.push_str(&MISSES.iter().fold(line.to_owned(), |l, miss| l.replace(miss, &bold(miss))));
+            }
+            out.push_str(end);
+        }
+        out
+    }
+}
+
 impl Common {
     fn asked(&self) -> Asked {
         Asked {
@@ -219,13 +243,17 @@ fn answer(cli: &Cli, clock: DateTime<Utc>) -> Result<(Vec<u8>, End), Stop> {
             let asked = Asked { site: cli.folder.clone(), ..Asked::default() };
             let context = tasks::open(&asked, clock)?;
             let shown = text::both(&context, &tasks::pool(&context), &tasks::mix(&context, &[])?);
+            let shown = Colour::Auto.of(&shown);
             Ok((shown.into_bytes(), End::Answered))
         }
         Some(Command::Pool { common }) => {
             let context = tasks::open(&common.asked(), clock)?;
             let answer = tasks::pool(&context);
-            let shown =
-                if common.json { json::pool(&context, &answer) } else { text::pool(&context, &answer) };
+            let shown = if common.json {
+                json::pool(&context, &answer)
+            } else {
+                common.color.of(&text::pool(&context, &answer))
+            };
             Ok((shown.into_bytes(), End::Answered))
         }
         Some(Command::Mix { common, set, strict }) => {
