@@ -2,8 +2,10 @@
 
 mod column;
 mod levelled;
+mod samples;
 mod slices;
 
-pub use column::{Column, OXYGEN_CARRY_M, OXYGEN_LOW_MG_L, OxygenSample, Reading, Sample, Source, Widths};
+pub use column::{Column, OXYGEN_LOW_MG_L, Reading, Source, Widths};
 pub use levelled::levelled;
+pub use samples::{OXYGEN_CARRY_M, OxygenSample, Sample};
 pub use slices::Slices;
