@@ -1,0 +1,14 @@
+//! Laws that hold whatever the water: limits, symmetry, conservation, continuity.
+
+#[path = "laws/columns.rs"]
+mod columns;
+#[path = "laws/continuity.rs"]
+mod continuity;
+#[path = "laws/crest.rs"]
+mod crest;
+#[path = "laws/levelling.rs"]
+mod levelling;
+#[path = "laws/shape.rs"]
+mod shape;
+#[path = "laws/withdrawal.rs"]
+mod withdrawal;
