@@ -10,9 +10,10 @@ use crate::site::Site;
 use crate::units::say;
 use crate::water;
 
-use super::column::{Column, OxygenSample, Sample, Source, Widths};
+use super::column::{Column, Source, Widths};
 use super::quality;
 use super::rows::{Placed, order, place, pool_duplicates, possible};
+use super::samples::{OxygenSample, Sample};
 
 /// One row as read, in SI, with the line it stands on. Absent readings are `None`.
 #[derive(Debug, Clone, Copy, Default, PartialEq)]

@@ -7,14 +7,16 @@ mod levelled;
 mod moved;
 mod quality;
 mod rows;
+mod samples;
 mod slices;
 
 pub use cast::{Profile, Raw, RawRow};
-pub use column::{Column, OXYGEN_CARRY_M, OXYGEN_LOW_MG_L, OxygenSample, Reading, Sample, Source, Widths};
+pub use column::{Column, OXYGEN_LOW_MG_L, Reading, Source, Widths};
 pub use layering::{
     Layering, Thermocline, buoyancy_s2, colder_m3, greatest_buoyancy, mixed_base_m, schmidt_stability_j_m2,
     thermocline,
 };
 pub use levelled::levelled;
 pub use rows::{ABOVE_SURFACE_M, WATER_C};
+pub use samples::{OXYGEN_CARRY_M, OxygenSample, Sample};
 pub use slices::Slices;

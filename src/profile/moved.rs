@@ -5,8 +5,8 @@ use crate::site::Site;
 use crate::units::say;
 
 use super::cast::Profile;
-use super::column::{OxygenSample, Sample};
 use super::layering::mixed_base_m;
+use super::samples::{OxygenSample, Sample};
 
 /// A pool moved by more than this against its cast is flagged, m.
 const MOVED_M: f64 = 1.0;

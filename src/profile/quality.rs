@@ -5,8 +5,8 @@ use crate::site::Site;
 use crate::units::say;
 use crate::water;
 
-use super::column::{OxygenSample, Sample};
 use super::levelled::levelled;
+use super::samples::{OxygenSample, Sample};
 
 /// Inversions up to this density difference are ordinary, kg/m3 (choice; most real casts invert a little).
 const INVERSION_KG_M3: f64 = 0.01;

@@ -1,0 +1,16 @@
+//! Laws that hold whatever the water: limits, symmetry, conservation, continuity.
+
+#![allow(clippy::unwrap_used, reason = "a test stops at its first surprise")]
+
+#[path = "laws/columns.rs"]
+mod columns;
+#[path = "laws/continuity.rs"]
+mod continuity;
+#[path = "laws/crest.rs"]
+mod crest;
+#[path = "laws/levelling.rs"]
+mod levelling;
+#[path = "laws/shape.rs"]
+mod shape;
+#[path = "laws/withdrawal.rs"]
+mod withdrawal;
