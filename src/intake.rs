@@ -1,4 +1,6 @@
 //! From gates to flows: capacity, submergence and leakage of each opening under a pool.
+//!
+//! Methods: `docs/methods.md`, section 4.
 
 use crate::site::{Kind, Outlet, Site};
 use crate::water::G_M_S2;

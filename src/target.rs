@@ -1,4 +1,6 @@
 //! Targets: rules the user enters, valid over a span of dates, and how a release stands against them.
+//!
+//! Methods: `docs/methods.md`, section 7.
 
 use chrono::{Datelike, NaiveDate};
 

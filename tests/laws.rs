@@ -1,6 +1,10 @@
 //! Laws that hold whatever the water: limits, symmetry, conservation, continuity.
 
-#![allow(clippy::unwrap_used, reason = "a test stops at its first surprise")]
+#![allow(
+    clippy::unwrap_used,
+    clippy::float_cmp,
+    reason = "a test stops at its first surprise; some laws are exact"
+)]
 
 #[path = "laws/columns.rs"]
 mod columns;

@@ -1,4 +1,6 @@
 //! What to beware of in a setting: thin assumptions, overlaps, missing oxygen, spill.
+//!
+//! Methods: `docs/methods.md`, section 5.
 
 use std::f64::consts::PI;
 

@@ -1,4 +1,6 @@
 //! Outlets at one elevation act as one sink: the levels of a site, and what a setting makes of them.
+//!
+//! Methods: `docs/methods.md`, section 4.
 
 use std::f64::consts::PI;
 

@@ -1,4 +1,6 @@
 //! How the water is layered: thermocline, stability, mixed layer, oxygen minimum, heat.
+//!
+//! Methods: `docs/methods.md`, section 2.
 
 use crate::site::Pool;
 use crate::water::{CP_REF_J_KG_K, G_M_S2, RHO_REF_KG_M3};

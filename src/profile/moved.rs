@@ -1,4 +1,6 @@
 //! The cast under another pool elevation.
+//!
+//! Methods: `docs/methods.md`, section 2.
 
 use crate::problem::Problem;
 use crate::site::Site;

@@ -1,4 +1,6 @@
 //! Is the cast sound: gaps, spikes, inversions, oxygen above saturation, stretches beyond the samples.
+//!
+//! Methods: `docs/methods.md`, section 2.
 
 use crate::problem::Problem;
 use crate::site::Site;

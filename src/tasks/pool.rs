@@ -1,4 +1,6 @@
 //! Is this profile sound, how is the water layered, which outlets have water.
+//!
+//! Methods: `docs/methods.md`, section 2.
 
 use crate::files::folder::Listed;
 use crate::intake;

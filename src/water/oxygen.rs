@@ -1,6 +1,8 @@
 //! Dissolved oxygen at saturation, and percent of it.
 //!
 //! Measured oxygen above saturation is real water; nothing here clamps it.
+//!
+//! Methods: `docs/methods.md`, section 1.
 
 const KELVIN: f64 = 273.15;
 
