@@ -1,30 +1,22 @@
 //! A setting judged: what stops it, what it gives, how it stands, and what to beware of.
 
-use std::f64::consts::PI;
-
 use chrono::NaiveDate;
 
 use crate::intake;
 use crate::problem::Problem;
-use crate::profile::{Column, Profile};
+use crate::profile::Profile;
 use crate::site::Site;
 use crate::target::{Standing, Target};
+use crate::units::say;
 use crate::withdrawal::CrestForm;
 
 use super::band::{Perturbed, Spread};
-use super::blend::{Blend, Drawn, draw_levels, overlapping, release, release_joined};
+use super::beware;
+use super::blend::{Blend, Drawn, draw_levels, release};
 use super::levels::{Setting, groups, levels};
 
-/// A zone thinner than this many opening heights is no longer that of a point sink (common practice, no source).
-const THIN_HEIGHTS: f64 = 3.0;
-/// A free limit stands in mixed water when density changes less than this over a metre there, kg/m3 (choice).
-const MIXED_KG_M3_M: f64 = 1e-3;
-/// More of the release than this from water below 1 mg/L makes the oxygen an upper bound (choice).
-const LOW_OXYGEN_SHARE: f64 = 0.05;
 /// Flow over an ungated crest set by hand may differ from its rating by this share (choice).
 const CREST_SHARE: f64 = 0.05;
-/// Rotation of the Earth, rad/s (standard).
-const EARTH_RAD_S: f64 = 7.292_115e-5;
 
 /// How the release stands against one target.
 #[derive(Debug, Clone, PartialEq)]
@@ -85,8 +77,10 @@ pub fn refusals(site: &Site, setting: &Setting, pool_m: f64) -> Vec<Problem> {
             out.push(Problem::refused(
                 "dry",
                 format!(
-                    "`{name}` at {centre:.2} m stands {:.2} m above the pool {pool_m:.2} m",
-                    centre - pool_m
+                    "`{name}` at {} is dry, {} above the pool {}",
+                    say::m(centre, 2),
+                    say::m(centre - pool_m, 2),
+                    say::m(pool_m, 2)
                 ),
                 "choose an outlet below the water",
             ));
@@ -99,10 +93,11 @@ pub fn refusals(site: &Site, setting: &Setting, pool_m: f64) -> Vec<Problem> {
             out.push(Problem::refused(
                 "crest-flow",
                 format!(
-                    "`{name}` has no gates: it passes {free:.2} m3/s at this pool, not {:.2} m3/s",
-                    gate.flow_m3s
+                    "`{name}` has no gates: at this pool it passes {}, not {}",
+                    say::m3s(free, 2),
+                    say::m3s(gate.flow_m3s, 2)
                 ),
-                "leave its flow out; it spills by itself",
+                "leave out its flow; it spills by itself",
             ));
             continue;
         }
@@ -111,7 +106,11 @@ pub fn refusals(site: &Site, setting: &Setting, pool_m: f64) -> Vec<Problem> {
         {
             out.push(Problem::refused(
                 "capacity",
-                format!("{:.2} m3/s through `{name}` is above its capacity of {most:.2} m3/s", gate.flow_m3s),
+                format!(
+                    "{} through `{name}` is above its capacity of {}",
+                    say::m3s(gate.flow_m3s, 2),
+                    say::m3s(most, 2)
+                ),
                 "lower the flow, or share it with another outlet",
             ));
         }
@@ -136,10 +135,10 @@ pub fn judge(
     let targets = standings(site, &release, &spread, date);
     let mut warnings = Vec::new();
     limits(site, setting, profile.pool_m, &release, &mut warnings);
-    zones(site, column, &drawn, &mut warnings);
-    overlaps(column, &drawn, &release, &mut warnings);
-    oxygen(site, &drawn, &release, &mut warnings);
-    cautions(site, column, &drawn, &mut warnings);
+    beware::zones(site, column, &drawn, &mut warnings);
+    beware::overlaps(column, &drawn, &release, &mut warnings);
+    beware::oxygen(site, &drawn, &release, &mut warnings);
+    beware::cautions(site, column, &drawn, &mut warnings);
     Some(Mix { levels: drawn, release, spread, targets, not_checked: not_checked(site, setting), warnings })
 }
 
@@ -192,7 +191,7 @@ fn standings(site: &Site, release: &Blend, spread: &Spread, date: NaiveDate) -> 
 
 /// Limits of the site that the setting breaks.
 fn limits(site: &Site, setting: &Setting, pool_m: f64, release: &Blend, warnings: &mut Vec<Problem>) {
-    let mut broken = |words: String| warnings.push(Problem::flag("limit", words, ""));
+    let mut broken = |words: String, cure: &str| warnings.push(Problem::flag("limit", words, cure));
     let mut wells = vec![(0.0_f64, 0_usize); site.wells.len()];
     for gate in &setting.gates {
         let Some(outlet) = site.outlets.get(gate.outlet) else { continue };
@@ -201,15 +200,24 @@ fn limits(site: &Site, setting: &Setting, pool_m: f64, release: &Blend, warnings
         if let Some(least) = outlet.min_submergence_m
             && depth < least
         {
-            broken(format!(
-                "min_submergence of {name}: {depth:.2} m of water above it, {least:.2} m asked for"
-            ));
+            broken(
+                format!(
+                    "min_submergence of `{name}`: {} of water above it, {} required",
+                    say::m(depth, 2),
+                    say::m(least, 2)
+                ),
+                "use a lower outlet",
+            );
         }
         if gate.flow_m3s < outlet.flow_min_m3s {
-            broken(format!(
-                "flow.min of {name}: {:.2} m3/s set, {:.2} m3/s asked for",
-                gate.flow_m3s, outlet.flow_min_m3s
-            ));
+            broken(
+                format!(
+                    "flow.min of `{name}`: {} set, {} required",
+                    say::m3s(gate.flow_m3s, 2),
+                    say::m3s(outlet.flow_min_m3s, 2)
+                ),
+                "raise its flow, or shut it",
+            );
         }
         if let Some(well) = outlet.well {
             wells[well].0 += gate.flow_m3s;
@@ -220,146 +228,41 @@ fn limits(site: &Site, setting: &Setting, pool_m: f64, release: &Blend, warnings
         if let Some(most) = well.max_flow_m3s
             && flow > most * (1.0 + 1e-9)
         {
-            broken(format!("max_flow of well {}: {flow:.2} m3/s set, {most:.2} m3/s allowed", well.name));
+            broken(
+                format!(
+                    "max_flow of well `{}`: {} set, {} allowed",
+                    well.name,
+                    say::m3s(flow, 2),
+                    say::m3s(most, 2)
+                ),
+                "lower the flow of its gates",
+            );
         }
         if let Some(most) = well.max_open
             && open > most
         {
-            broken(format!("max_open of well {}: {open} gates open, {most} allowed", well.name));
+            broken(
+                format!("max_open of well `{}`: {open} gates open, {most} allowed", well.name),
+                "open fewer of its gates",
+            );
         }
     }
     let total = release.flow_m3s;
     if let Some(least) = site.release.min_m3s
         && total < least * (1.0 - 1e-9)
     {
-        broken(format!("release.min: {total:.2} m3/s in total, {least:.2} m3/s asked for"));
+        broken(
+            format!("release.min: {} in total, {} required", say::m3s(total, 2), say::m3s(least, 2)),
+            "release more",
+        );
     }
     if let Some(most) = site.release.max_m3s
         && total > most * (1.0 + 1e-9)
     {
-        broken(format!("release.max: {total:.2} m3/s in total, {most:.2} m3/s allowed"));
-    }
-}
-
-fn level_name(site: &Site, drawn: &Drawn) -> String {
-    let names: Vec<&str> = drawn.level.outlets.iter().map(|&i| site.outlets[i].name.as_str()).collect();
-    names.join(", ")
-}
-
-/// Where the zone's assumptions are thin.
-fn zones(site: &Site, column: &Column, drawn: &[Drawn], warnings: &mut Vec<Problem>) {
-    for d in drawn {
-        let Some(zone) = &d.zone else { continue };
-        let name = level_name(site, d);
-        for (side, what) in [(&zone.lower, "lower"), (&zone.upper, "upper")] {
-            if side.end == crate::withdrawal::End::Boundary {
-                continue;
-            }
-            let change =
-                (column.density_kg_m3(side.limit_m - 0.5) - column.density_kg_m3(side.limit_m + 0.5)).abs();
-            if change < MIXED_KG_M3_M {
-                warnings.push(Problem::flag(
-                    "mixed-layer-limit",
-                    format!(
-                        "the {what} limit of {name} ({:.2} m) lies in mixed water: nothing physical stops it there",
-                        side.limit_m
-                    ),
-                    "",
-                ));
-            }
-        }
-        let reach = (zone.upper.limit_m - zone.centre_m).min(zone.centre_m - zone.lower.limit_m);
-        let free =
-            zone.upper.end == crate::withdrawal::End::Free && zone.lower.end == crate::withdrawal::End::Free;
-        if free && reach < THIN_HEIGHTS * d.level.height_m {
-            warnings.push(Problem::flag(
-                "thin-zone",
-                format!(
-                    "the zone of {name} reaches {reach:.1} m, less than {THIN_HEIGHTS:.0} opening heights: a point sink is a rough picture of it"
-                ),
-                "",
-            ));
-        }
-    }
-    if !column.has_width() {
-        warnings.push(Problem::note(
-            "width-assumed",
-            "no widths in the pool table: the pool is taken as equally wide at every elevation",
-        ));
-    }
-}
-
-fn overlaps(column: &Column, drawn: &[Drawn], release: &Blend, warnings: &mut Vec<Problem>) {
-    let groups = overlapping(drawn);
-    if groups.is_empty() {
-        return;
-    }
-    if let Some(joined) = release_joined(column, drawn, &groups, 1.0) {
-        warnings.push(Problem::flag(
-            "zones-overlap",
-            format!(
-                "levels lie inside each other's zones; as one sink they would give {:+.2} C; the difference is in the band",
-                joined.temperature_c - release.temperature_c
-            ),
-            "",
-        ));
-    }
-}
-
-fn oxygen(site: &Site, drawn: &[Drawn], release: &Blend, warnings: &mut Vec<Problem>) {
-    for d in drawn {
-        let Some(draw) = &d.draw else { continue };
-        if draw.oxygen_mg_l.is_none() {
-            let words = if draw.oxygen_missing_share >= 1.0 - 1e-9 {
-                format!("no oxygen reading reaches the zone of {}", level_name(site, d))
-            } else {
-                format!(
-                    "{:.0} % of the water of {} comes from where no oxygen reading reaches",
-                    100.0 * draw.oxygen_missing_share,
-                    level_name(site, d)
-                )
-            };
-            warnings.push(Problem::flag(
-                "oxygen-missing",
-                format!("{words}: release oxygen stays unknown"),
-                "",
-            ));
-        }
-    }
-    if release.oxygen_low_share > LOW_OXYGEN_SHARE && release.oxygen_mg_l.is_some() {
-        warnings.push(Problem::flag(
-            "oxygen-upper-bound",
-            format!(
-                "{:.0} % of the release comes from water below 1 mg/L: sulphide, iron and manganese take up oxygen after mixing, so the figure is an upper bound",
-                100.0 * release.oxygen_low_share
-            ),
-            "",
-        ));
-    }
-}
-
-fn cautions(site: &Site, column: &Column, drawn: &[Drawn], warnings: &mut Vec<Problem>) {
-    let spills = drawn.iter().any(|d| d.level.outlets.iter().any(|&i| site.outlets[i].is_crest()));
-    if spills {
-        warnings.push(Problem::flag(
-            "dissolved-gas",
-            "spill takes up air: watch total dissolved gas below the dam (110 % is the usual criterion); not predicted",
-            "",
-        ));
-    }
-    if let (Some(latitude), Some(width)) = (site.place.latitude_deg, site.pool.width_m(column.surface_m())) {
-        let (bed, surface) = (column.bed_m(), column.surface_m());
-        let lower = (bed, column.density_kg_m3(bed));
-        let upper = (surface, column.density_kg_m3(surface));
-        let buoyancy = crate::profile::buoyancy_s2(lower, upper).max(0.0).sqrt();
-        let coriolis = (2.0 * EARTH_RAD_S * latitude.to_radians().sin()).abs();
-        if coriolis > 0.0 && buoyancy * (surface - bed) / (PI * coriolis) < width {
-            warnings.push(Problem::flag(
-                "rotation",
-                "the pool is wide enough for the Earth's rotation to matter: zones may be thicker than computed",
-                "",
-            ));
-        }
+        broken(
+            format!("release.max: {} in total, {} allowed", say::m3s(total, 2), say::m3s(most, 2)),
+            "release less",
+        );
     }
 }
 

@@ -2,6 +2,7 @@
 
 use crate::problem::Problem;
 use crate::site::Site;
+use crate::units::say;
 
 use super::cast::Profile;
 use super::column::{OxygenSample, Sample};
@@ -21,11 +22,7 @@ impl Profile {
         if !(site.pool.bed_m..=site.pool.top_m()).contains(&pool_m) || pool_m <= site.pool.bed_m {
             return Err(Problem::refused(
                 "pool-outside",
-                format!(
-                    "pool {pool_m:.2} m lies outside the site's table ({:.2} to {:.2} m)",
-                    site.pool.bed_m,
-                    site.pool.top_m()
-                ),
+                format!("pool {} lies outside the pool table ({})", say::m(pool_m, 2), site.pool.extent()),
                 "check --pool, its unit and its datum",
             ));
         }
@@ -51,16 +48,19 @@ impl Profile {
         if by.abs() > MOVED_M {
             flags.push(Problem::flag(
                 "pool-moved",
-                format!("the pool stands {by:+.2} m from that of the cast; the layers below the mixed layer keep their elevations"),
-                "cast again: a moved pool is a guess",
+                format!(
+                    "the pool is {} from that of the cast: the mixed layer moves with it, the water below keeps its elevation",
+                    say::m(by, 2).signed()
+                ),
+                "take a new cast; until then the profile is a guess",
             ));
         }
         let left_out = self.samples.len() - samples.len();
         if left_out > 0 {
             flags.push(Problem::flag(
                 "exposed",
-                format!("{left_out} sample(s) left out: the falling pool or its mixed layer stands where they were taken"),
-                "cast again at this pool",
+                format!("{left_out} sample(s) left out: the surface or its mixed layer is now where they were taken"),
+                "take a new cast at this pool",
             ));
         }
         let column = if samples.len() >= 2 { Self::column_of(site, pool_m, &samples, &oxygen) } else { None };
@@ -68,7 +68,7 @@ impl Profile {
             return Err(Problem::refused(
                 "too-few",
                 "fewer than two samples are left under this pool",
-                "cast again at this pool",
+                "take a new cast at this pool",
             ));
         };
         Ok(Self { pool_m, samples, lines, oxygen, column, flags, ..self.clone() })

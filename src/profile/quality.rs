@@ -2,6 +2,7 @@
 
 use crate::problem::Problem;
 use crate::site::Site;
+use crate::units::say;
 use crate::water;
 
 use super::column::{OxygenSample, Sample};
@@ -50,10 +51,13 @@ fn gaps(site: &Site, pool_m: f64, samples: &[Sample], lines: &[usize], flags: &m
                 Problem::flag(
                     "gap",
                     format!(
-                        "no sample for {height:.1} m between {:.2} and {:.2} m, over which the water changes by {change:.1} C",
-                        pair[0].elevation_m, pair[1].elevation_m
+                        "no sample for {} between {} and {}, where the water changes by {}",
+                        say::m(height, 1),
+                        say::m(pair[0].elevation_m, 2),
+                        say::m(pair[1].elevation_m, 2),
+                        say::dc(change, 1)
                     ),
-                    "a zone limit in the gap is a guess; cast again with closer samples",
+                    "a zone that ends in the gap is a guess; sample closer next time",
                 )
                 .on_line(*line),
             );
@@ -70,9 +74,10 @@ fn gaps(site: &Site, pool_m: f64, samples: &[Sample], lines: &[usize], flags: &m
                     Problem::flag(
                         "extrapolated",
                         format!(
-                            "the last sample lies {stretch:.1} m {what}; its water is held over that stretch"
+                            "the nearest sample is {} {what}; its reading is used over that stretch",
+                            say::m(stretch, 1)
                         ),
-                        "cast to the bed and from the surface",
+                        "sample from the surface to the bed next time",
                     )
                     .on_line(*line),
                 );
@@ -106,8 +111,10 @@ fn spikes(
                 Problem::flag(
                     "spike",
                     format!(
-                        "temperature {:.2} C at {:.2} m stands {off:+.2} C off both neighbours; kept",
-                        w[1].temperature_c, w[1].elevation_m
+                        "temperature {} at {} is {} off both neighbours; kept",
+                        say::c(w[1].temperature_c, 2),
+                        say::m(w[1].elevation_m, 2),
+                        say::dc(off, 2).signed()
                     ),
                     "blank the cell if the sensor slipped",
                 )
@@ -125,8 +132,9 @@ fn spikes(
                 Problem::flag(
                     "spike",
                     format!(
-                        "oxygen {:.2} mg/L at {:.2} m stands {off:+.2} mg/L off both neighbours; kept",
-                        w[1].oxygen_mg_l, w[1].elevation_m
+                        "oxygen {:.2} mg/L at {} is {off:+.2} mg/L off both neighbours; kept",
+                        w[1].oxygen_mg_l,
+                        say::m(w[1].elevation_m, 2)
                     ),
                     "blank the cell if the sensor slipped",
                 )
@@ -170,10 +178,11 @@ fn inversions(site: &Site, samples: &[Sample], lines: &[usize], flags: &mut Vec<
                     Problem::flag(
                         "inversion-large",
                         format!(
-                            "between {:.2} and {:.2} m denser water lies above lighter by {rise:.3} kg/m3; levelled for the zone, and the band doubled",
-                            z[from], z[to]
+                            "between {} and {} denser water lies above lighter, by {rise:.3} kg/m3; levelled for the zone, and the band doubled",
+                            say::m(z[from], 2),
+                            say::m(z[to], 2)
                         ),
-                        "a sensor or its depth may be wrong here",
+                        "check the sensor and its depth here",
                     )
                     .on_line(lines[from]),
                 );
@@ -188,10 +197,10 @@ fn inversions(site: &Site, samples: &[Sample], lines: &[usize], flags: &mut Vec<
             Problem::flag(
                 "inversion",
                 format!(
-                    "{} stretch(es) invert a little, the most by {rise:.4} kg/m3 between {:.2} and {:.2} m; levelled for the zone only",
+                    "denser water lies a little above lighter in {} stretch(es), at most by {rise:.4} kg/m3, between {} and {}; levelled for the zone only",
                     small.len(),
-                    z[from],
-                    z[to]
+                    say::m(z[from], 2),
+                    say::m(z[to], 2)
                 ),
                 "",
             )
@@ -226,14 +235,14 @@ fn saturation(
             Problem::flag(
                 "oxygen-above-saturation",
                 format!(
-                    "{} oxygen reading(s) above {:.0} % of saturation, the most {:.0} % ({:.2} mg/L at {:.2} m); kept as measured",
+                    "{} oxygen reading(s) above {:.0} % of saturation, at most {:.0} % ({:.2} mg/L at {}); kept",
                     over.len(),
                     100.0 * site.checks.oxygen_share,
                     100.0 * share,
                     o.oxygen_mg_l,
-                    o.elevation_m
+                    say::m(o.elevation_m, 2)
                 ),
-                "an algal bloom does this; so does a sensor out of calibration",
+                "an algal bloom does this; if there is none, calibrate the sensor",
             )
             .on_line(*line),
         );

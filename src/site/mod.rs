@@ -13,7 +13,6 @@ use chrono::FixedOffset;
 use crate::target::Target;
 use crate::units::{Datum, Folder};
 
-pub use check::CONDUIT_SLACK_M;
 pub use outlet::{Kind, Leakage, OpenPart, Opens, Outlet, Position, Shape};
 pub use pool::{Pool, RawRow, WidthSource};
 pub use raw::{Raw, RawOutlet, RawPool, RawTarget, RawWell};
