@@ -56,7 +56,12 @@ impl Cast {
             specific_us_cm: r.specific_us_cm,
             ..RawRow::default()
         });
-        let raw = Raw { file: self.name.clone(), taken: None, pool_m: Some(POOL_M), rows: rows.collect() };
+        let raw = Raw {
+            file: self.name.clone(), // invented: the hour
+            taken: Some(format!("{}T12:00:00Z", self.rows[0].date).parse().unwrap()),
+            pool_m: Some(POOL_M),
+            rows: rows.collect(),
+        };
         let site = box_site(self.greatest(|r| Some(r.depth_m)), oxygen_share);
         let (profile, problems) = Profile::build(&raw, &site, None);
         (sound(profile, &problems), problems)
