@@ -37,7 +37,7 @@ pub struct TargetStanding {
     pub oxygen_share_inside: Option<f64>,
     /// Share of the perturbed cases inside both.
     pub share_inside_both: Option<f64>,
-    /// The strictest rule of its point on that date.
+    /// The strictest rule valid on that date.
     pub governs: bool,
 }
 

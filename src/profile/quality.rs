@@ -221,6 +221,7 @@ fn saturation(
     flags: &mut Vec<Problem>,
 ) {
     let pressure = site.surface_pressure_atm(pool_m);
+    let pressure_words = if site.place.altitude_m.is_some() { "" } else { " at sea level" };
     let mut over: Vec<(f64, &OxygenSample, usize)> = Vec::new();
     for (o, line) in oxygen.iter().zip(lines) {
         let near = samples.iter().min_by(|a, b| {
@@ -237,7 +238,7 @@ fn saturation(
             Problem::flag(
                 "oxygen-above-saturation",
                 format!(
-                    "{} oxygen reading(s) above {:.0} % of saturation, at most {:.0} % ({:.2} mg/L at {}); kept",
+                    "{} oxygen reading(s) above {:.0} % of saturation{pressure_words}, at most {:.0} % ({:.2} mg/L at {}); kept",
                     over.len(),
                     100.0 * site.checks.oxygen_share,
                     100.0 * share,

@@ -105,7 +105,7 @@ impl Default for CastChecks {
             extrapolate_m: 5.0,
             spike_c: 1.0,
             spike_mg_l: 2.0,
-            oxygen_share: 1.1,
+            oxygen_share: 1.25,
             ageing_days: 7.0,
             stale_days: 14.0,
             heat_w_m2: 400.0,

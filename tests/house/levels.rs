@@ -35,7 +35,8 @@ fn named(code: &str) -> BTreeSet<String> {
     for root in ["crate::", "gatemix::"] {
         for (at, _) in code.match_indices(root) {
             let rest = &code[at + root.len()..];
-            let word = |t: &str| t.chars().take_while(|c| c.is_alphanumeric() || *c == '_').collect::<String>();
+            let word =
+                |t: &str| t.chars().take_while(|c| c.is_alphanumeric() || *c == '_').collect::<String>();
             if let Some(list) = rest.strip_prefix('{') {
                 let mut depth = 0;
                 let mut item = String::new();

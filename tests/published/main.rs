@@ -3,7 +3,10 @@
 
 #![allow(clippy::unwrap_used, reason = "a test stops at its first surprise")]
 
+mod layering;
+mod pool;
 mod table;
+mod targets;
 mod units;
 mod water;
 mod withdrawal;
