@@ -78,7 +78,7 @@ pub struct Profile {
     pub flags: Vec<Problem>,
 }
 
-/// Surface water denser than bed water by more than this is an upside-down profile, kg/m3.
+/// Surface water denser than bed water by more than this is an upside-down profile, kg/m3 (choice).
 const UPSIDE_DOWN_KG_M3: f64 = 0.5;
 
 impl Profile {

@@ -10,7 +10,7 @@ use super::cast::Profile;
 use super::layering::mixed_base_m;
 use super::samples::{OxygenSample, Sample};
 
-/// A pool moved by more than this against its cast is flagged, m.
+/// A pool moved by more than this against its cast is flagged, m (choice).
 const MOVED_M: f64 = 1.0;
 
 impl Profile {

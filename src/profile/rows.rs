@@ -6,9 +6,9 @@ use crate::units::say;
 
 use super::cast::{Raw, RawRow};
 
-/// Samples up to this far above the pool count as at the surface, m.
+/// Samples up to this far above the pool count as at the surface, m (choice).
 pub const ABOVE_SURFACE_M: f64 = 0.1;
-/// Water outside this range cannot be, C.
+/// Water outside this range cannot be, C (choice).
 pub const WATER_C: std::ops::RangeInclusive<f64> = -1.0..=45.0;
 /// Samples closer than this are one elevation, m.
 const SAME_ELEVATION_M: f64 = 0.005;

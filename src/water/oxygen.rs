@@ -4,6 +4,7 @@
 //!
 //! Methods: `docs/methods.md`, section 1.
 
+/// Kelvin at 0 C (standard; exact by definition).
 const KELVIN: f64 = 273.15;
 
 /// Air pressure of the standard atmosphere.

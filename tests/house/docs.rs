@@ -62,9 +62,10 @@ fn law_the_top_level_is_the_owners_list() {
 
 #[test]
 fn law_every_coefficient_says_how_sure() {
+    let mut silent = Vec::new();
     let sure = ["standard", "derived", "recalled", "choice", "from memory", "no source", "exact"];
     for folder in ["src/water", "src/withdrawal", "src/profile", "src/mix"] {
-        for (file, text) in sources(folder) {
+        for (file, text) in sources(folder).into_iter().filter(|(file, _)| !file.ends_with("/tests.rs")) {
             let lines: Vec<&str> = text.lines().collect();
             for (i, line) in lines.iter().enumerate() {
                 let constant = line.trim_start_matches("pub ").trim_start_matches("pub(super) ");
@@ -83,10 +84,13 @@ fn law_every_coefficient_says_how_sure() {
                 let numeric = ["found to", "Halvings", "closer than this are one", "Share of the way"];
                 let told = sure.iter().any(|s| above.contains(s) || head.contains(s))
                     || numeric.iter().any(|s| above.contains(s));
-                assert!(told, "{file}:{}: `{line}` does not say how sure it is", i + 1);
+                if !told {
+                    silent.push(format!("{file}:{}: `{line}` does not say how sure it is", i + 1));
+                }
             }
         }
     }
+    assert!(silent.is_empty(), "{}", silent.join("\n"));
 }
 
 #[test]
