@@ -8,14 +8,15 @@ use crate::problem::Problem;
 use crate::profile::{Column, buoyancy_s2};
 use crate::site::Site;
 use crate::units::say;
-use crate::withdrawal::End;
+use crate::withdrawal::{End, Side};
 
 use super::blend::{Blend, Drawn, overlapping, release_joined};
 
 /// A zone thinner than this many opening heights is no longer that of a point sink (common practice, no source).
-const THIN_HEIGHTS: f64 = 3.0;
-/// A free limit stands in mixed water when density changes less than this over a metre there, kg/m3 (choice).
-const MIXED_KG_M3_M: f64 = 1e-3;
+const THIN_HEIGHTS: f64 = 2.0;
+/// A free limit stands in mixed water when density changes less than this over a metre there, kg/m3: what a
+/// hundredth of a degree makes of cold water (choice).
+const MIXED_KG_M3_M: f64 = 3e-4;
 /// More of the release than this from water below 1 mg/L makes the oxygen an upper bound (choice).
 const LOW_OXYGEN_SHARE: f64 = 0.05;
 /// Rotation of the Earth, rad/s (standard).
@@ -31,22 +32,24 @@ pub(super) fn zones(site: &Site, column: &Column, drawn: &[Drawn], warnings: &mu
     for d in drawn {
         let Some(zone) = &d.zone else { continue };
         let name = level_name(site, d);
-        for (side, what) in [(&zone.lower, "lower"), (&zone.upper, "upper")] {
-            if side.end == End::Boundary {
-                continue;
-            }
-            let change =
-                (column.density_kg_m3(side.limit_m - 0.5) - column.density_kg_m3(side.limit_m + 0.5)).abs();
-            if change < MIXED_KG_M3_M {
-                warnings.push(Problem::flag(
-                    "mixed-layer-limit",
-                    format!(
-                        "the {what} limit of the zone of {name} ({}) lies in mixed water, where nothing holds it",
-                        say::m(side.limit_m, 2)
-                    ),
-                    "read this limit as a guess",
-                ));
-            }
+        let mixed = |side: &Side| {
+            let density = |by: f64| column.density_kg_m3(side.limit_m + by);
+            side.end == End::Free && (density(-0.5) - density(0.5)).abs() < MIXED_KG_M3_M
+        };
+        let limits: Vec<String> = [(&zone.lower, "lower"), (&zone.upper, "upper")]
+            .into_iter()
+            .filter(|(side, _)| mixed(side))
+            .map(|(side, what)| format!("{what} limit ({})", say::m(side.limit_m, 1)))
+            .collect();
+        if !limits.is_empty() {
+            warnings.push(Problem::flag(
+                "mixed-layer-limit",
+                format!(
+                    "{name}: the {} lies in mixed water, where nothing holds it",
+                    limits.join(" and the ")
+                ),
+                "read it as a guess",
+            ));
         }
         let reach = (zone.upper.limit_m - zone.centre_m).min(zone.centre_m - zone.lower.limit_m);
         let free = zone.upper.end == End::Free && zone.lower.end == End::Free;
@@ -54,7 +57,7 @@ pub(super) fn zones(site: &Site, column: &Column, drawn: &[Drawn], warnings: &mu
             warnings.push(Problem::flag(
                 "thin-zone",
                 format!(
-                    "the zone of {name} reaches only {} from its centre, less than {THIN_HEIGHTS:.0} opening heights: its computed shape is rough",
+                    "{name}: the zone reaches only {} from its centre, less than {THIN_HEIGHTS:.0} opening heights: its shape is rough",
                     say::m(reach, 1)
                 ),
                 "",

@@ -11,7 +11,7 @@ fn named_in_methods() -> BTreeSet<(String, String)> {
     let mut out = BTreeSet::new();
     for line in read("docs/methods.md").lines() {
         if let Some(heading) = line.strip_prefix("## ") {
-            section = heading.split('.').next().unwrap_or("").to_owned();
+            heading.split('.').next().unwrap_or("").clone_into(&mut section);
         }
         for piece in line.split('`').skip(1).step_by(2) {
             if piece.starts_with("src/") {
