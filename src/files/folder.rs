@@ -2,6 +2,7 @@
 
 use std::path::{Path, PathBuf};
 
+use chrono::{DateTime, FixedOffset};
 use include_dir::{Dir, include_dir};
 use sha2::{Digest, Sha256};
 
@@ -149,6 +150,11 @@ impl Folder {
             taken(a).cmp(&taken(b)).then_with(|| a.file.cmp(&b.file))
         });
         casts
+    }
+
+    /// When the newest cast of the folder was taken.
+    pub fn newest_time(&self) -> Option<DateTime<FixedOffset>> {
+        self.casts().iter().filter_map(|l| l.raw.as_ref()?.taken).max()
     }
 
     /// What the site file says of a cast of that file name.

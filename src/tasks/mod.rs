@@ -66,7 +66,7 @@ impl OnFrom {
         match self {
             Self::Asked => "as asked",
             Self::Clock => "the clock",
-            Self::NewestCast => "the cast's time: demonstration",
+            Self::NewestCast => "the newest cast's time: demonstration",
         }
     }
 }
@@ -123,7 +123,7 @@ pub fn open(asked: &Asked, clock: DateTime<Utc>) -> Result<Context, Failure> {
     }
     .map_err(|problems| Failure::Refused(problems, system))?;
     let mut profile = read.profile;
-    let (on, on_from) = decision_date(asked, site, &profile, clock)?;
+    let (on, on_from) = decision_date(asked, &folder, clock)?;
     let age_days = profile.age_days(on);
     age_flags(site, &mut profile, age_days);
     let fingerprint = folder.fingerprint(&[&read.source]);
@@ -138,17 +138,17 @@ fn open_folder(asked: &Asked) -> Result<Folder, Failure> {
 
 fn decision_date(
     asked: &Asked,
-    site: &Site,
-    profile: &Profile,
+    folder: &Folder,
     clock: DateTime<Utc>,
 ) -> Result<(DateTime<FixedOffset>, OnFrom), Failure> {
+    let site = &folder.site;
     let now = clock.with_timezone(&site.offset);
     match asked.on.as_deref() {
         Some("now") => Ok((now, OnFrom::Clock)),
         Some(text) => parse_time(text, site.offset)
             .map(|time| (time, OnFrom::Asked))
             .map_err(|words| Failure::Usage(format!("--on: {words}; {TIME_CURE}, or `now`"))),
-        None => match profile.taken.filter(|_| site.demonstration) {
+        None => match folder.newest_time().filter(|_| site.demonstration) {
             Some(taken) => Ok((taken, OnFrom::NewestCast)),
             None => Ok((now, OnFrom::Clock)),
         },

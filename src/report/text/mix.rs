@@ -74,16 +74,19 @@ fn release_line(mix: &Mix, system: System) -> String {
 fn against_now(site: &Site, now: &Setting, was: &Mix, tried: &Mix, system: System) -> String {
     let mut out = labelled("Now", &setting_words(site, now, system));
     out.push_str(&labelled("", &release_line(was, system)));
-    let warmer = tried.release.temperature_c - was.release.temperature_c;
-    let mut words = format!(
-        "the setting tried is {} {} than now",
-        step(warmer.abs(), system),
-        if warmer < 0.0 { "colder" } else { "warmer" }
-    );
-    let aired = tried.release.oxygen_mg_l.zip(was.release.oxygen_mg_l).map(|(a, b)| a - b);
-    if let Some(aired) = aired {
-        let way = if aired < 0.0 { "less" } else { "more" };
-        let _ = write!(words, ", with {:.1} mg/L {way} oxygen", aired.abs());
+    let shown = |by: f64, unit: &str, words: [&str; 2]| {
+        if by.abs() < 0.05 {
+            "the same to a tenth".to_owned()
+        } else {
+            format!("{:.1} {unit} {}", by.abs(), words[usize::from(by < 0.0)])
+        }
+    };
+    let unit = system.unit(Dimension::TemperatureDifference);
+    let warmer = unit.from_si(tried.release.temperature_c - was.release.temperature_c);
+    let mut words =
+        format!("against now: temperature {}", shown(warmer, unit.symbol(), ["warmer", "colder"]));
+    if let Some((a, b)) = tried.release.oxygen_mg_l.zip(was.release.oxygen_mg_l) {
+        let _ = write!(words, ", oxygen {}", shown(a - b, "mg/L", ["higher", "lower"]));
     }
     out.push_str(&labelled("", &words));
     out
