@@ -70,6 +70,12 @@ pub fn spills_by_itself(outlet: &Outlet) -> bool {
     matches!(outlet.kind, Kind::Crest { gated: false, .. })
 }
 
+/// Area of the port that would leak as a shut gate does, always open, m2: q_ref sqrt(K/(2 g h_ref)).
+pub fn leak_area_m2(outlet: &Outlet) -> f64 {
+    let loss = outlet.loss.unwrap_or(ASSUMED_LOSS);
+    outlet.leakage.map_or(0.0, |leak| leak.flow_m3s * (loss / (2.0 * G_M_S2 * leak.head_m)).sqrt())
+}
+
 /// Leak of a shut gate under a head, m3/s: a port always open, so it goes as the root of the head.
 /// `place` from 0 to 1 moves within the range the site gives about its figure; 0.5 is the figure itself.
 pub fn leak_m3s(outlet: &Outlet, head_m: f64, place: f64) -> f64 {
