@@ -9,7 +9,8 @@ use chrono::{DateTime, Utc};
 use clap::{Args, CommandFactory, Parser, Subcommand, ValueEnum};
 
 use crate::files::atomic;
-use crate::files::folder::{check, demonstration_files, demonstrations};
+use crate::files::folder::{demonstration_files, demonstrations};
+use crate::mix::TargetStanding;
 use crate::problem::{Problem, any_refused, harmless};
 use crate::report::{json, text};
 use crate::tasks::{self, Asked, Failure};
@@ -105,6 +106,30 @@ enum Units {
 enum Colour {
     Auto,
     Never,
+}
+
+/// Words that tell of a miss; they stand in capitals, so weight only helps the eye.
+const MISSES: [&str; 5] = ["ABOVE", "BELOW", "UNKNOWN", "DRY", "SHORT"];
+
+impl Colour {
+    /// The text with the release and every miss in bold. The stream strips it where there is no terminal.
+    fn of(self, text: &str) -> String {
+        if matches!(self, Self::Never) {
+            return text.to_owned();
+        }
+        let bold = |words: &str| format!("\u{1b}[1m{words}\u{1b}[0m");
+        let mut out = String::with_capacity(text.len() + 64);
+        for line in text.split_inclusive('\n') {
+            let (line, end) = line.strip_suffix('\n').map_or((line, ""), |l| (l, "\n"));
+            if line.starts_with("Release  ") {
+                out.push_str(&bold(line));
+            } else {
+                out.push_str(&MISSES.iter().fold(line.to_owned(), |l, miss| l.replace(miss, &bold(miss))));
+            }
+            out.push_str(end);
+        }
+        out
+    }
 }
 
 impl Common {
@@ -208,8 +233,8 @@ impl From<Failure> for Stop {
 fn failed(stop: &Stop) -> (String, End) {
     match stop {
         Stop::Task(Failure::Usage(words)) => (format!("gatemix: {}\n", harmless(words)), End::Usage),
-        Stop::Task(Failure::Refused(problems)) => {
-            let lines: Vec<String> = problems.iter().map(ToString::to_string).collect();
+        Stop::Task(Failure::Refused(problems, system)) => {
+            let lines: Vec<String> = problems.iter().map(|p| p.text(*system)).collect();
             (lines.join("\n") + "\n", End::Refused)
         }
         Stop::Machine(problem) => (format!("{problem}\n"), End::Failed),
@@ -222,25 +247,29 @@ fn answer(cli: &Cli, clock: DateTime<Utc>) -> Result<(Vec<u8>, End), Stop> {
             let asked = Asked { site: cli.folder.clone(), ..Asked::default() };
             let context = tasks::open(&asked, clock)?;
             let shown = text::both(&context, &tasks::pool(&context), &tasks::mix(&context, &[])?);
+            let shown = Colour::Auto.of(&shown);
             Ok((shown.into_bytes(), End::Answered))
         }
         Some(Command::Pool { common }) => {
             let context = tasks::open(&common.asked(), clock)?;
             let answer = tasks::pool(&context);
-            let shown =
-                if common.json { json::pool(&context, &answer) } else { text::pool(&context, &answer) };
+            let shown = if common.json {
+                json::pool(&context, &answer)
+            } else {
+                common.color.of(&text::pool(&context, &answer))
+            };
             Ok((shown.into_bytes(), End::Answered))
         }
         Some(Command::Mix { common, set, strict }) => {
             let context = tasks::open(&common.asked(), clock)?;
             let answer = tasks::mix(&context, set)?;
             let shown = if common.json { json::mix(&context, &answer) } else { text::mix(&context, &answer) };
-            let missed = *strict && answer.mix.targets.iter().any(tasks_missed);
+            let missed = *strict && answer.mix.targets.iter().any(TargetStanding::missed);
             Ok((shown.into_bytes(), if missed { End::Missed } else { End::Answered }))
         }
         Some(Command::Check { site, json }) => {
-            let problems = check(site);
-            let shown = if *json { json::check(&problems) } else { text::check(site, &problems) };
+            let (problems, system) = tasks::check(site);
+            let shown = if *json { json::check(&problems) } else { text::check(site, &problems, system) };
             let end = if any_refused(&problems) { End::Refused } else { End::Answered };
             Ok((shown.into_bytes(), end))
         }
@@ -259,10 +288,6 @@ fn answer(cli: &Cli, clock: DateTime<Utc>) -> Result<(Vec<u8>, End), Stop> {
             }
         }
     }
-}
-
-fn tasks_missed(standing: &crate::mix::TargetStanding) -> bool {
-    standing.missed()
 }
 
 /// Writes the demonstration sites below a folder. A file that is there with other contents is left alone and stops

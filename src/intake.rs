@@ -1,4 +1,6 @@
 //! From gates to flows: capacity, submergence and leakage of each opening under a pool.
+//!
+//! Methods: `docs/methods.md`, section 4.
 
 use crate::site::{Kind, Outlet, Site};
 use crate::water::G_M_S2;
@@ -66,6 +68,12 @@ pub fn crest_flow_m3s(outlet: &Outlet, pool_m: f64) -> Option<f64> {
 /// Whether a crest spills whenever the pool stands above it.
 pub fn spills_by_itself(outlet: &Outlet) -> bool {
     matches!(outlet.kind, Kind::Crest { gated: false, .. })
+}
+
+/// Area of the port that would leak as a shut gate does, always open, m2: q_ref sqrt(K/(2 g h_ref)).
+pub fn leak_area_m2(outlet: &Outlet) -> f64 {
+    let loss = outlet.loss.unwrap_or(ASSUMED_LOSS);
+    outlet.leakage.map_or(0.0, |leak| leak.flow_m3s * (loss / (2.0 * G_M_S2 * leak.head_m)).sqrt())
 }
 
 /// Leak of a shut gate under a head, m3/s: a port always open, so it goes as the root of the head.

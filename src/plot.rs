@@ -17,7 +17,9 @@ pub fn ticks(low: f64, high: f64, most: u32) -> Vec<f64> {
     let mut k = 0.0;
     loop {
         let tick = (first + k) * size;
-        out.push(tick);
+        // a product such as 3 x 0.1 carries a last digit that a label would show
+        let digits = (1e12 / power).round();
+        out.push((tick * digits).round() / digits);
         if tick >= high - 1e-9 * size {
             return out;
         }
@@ -33,9 +35,11 @@ pub struct Scale {
 }
 
 impl Scale {
-    /// A scale between two values, widened to round ticks. A range without width is widened about its value.
-    pub fn round(low: f64, high: f64, most: u32) -> Self {
-        let (low, high) = if high > low { (low, high) } else { (low - 0.5, low + 0.5) };
+    /// A scale between two values, widened to round ticks, and about its middle to at least `least`, so that noise
+    /// does not fill the picture.
+    pub fn round(low: f64, high: f64, least: f64, most: u32) -> Self {
+        let short = (0.5 * (least - (high - low))).max(0.0);
+        let (low, high) = (low - short, high + short);
         let ticks = ticks(low, high, most);
         match (ticks.first(), ticks.last()) {
             (Some(&low), Some(&high)) => Self { low, high },

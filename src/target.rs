@@ -1,4 +1,6 @@
 //! Targets: rules the user enters, valid over a span of dates, and how a release stands against them.
+//!
+//! Methods: `docs/methods.md`, section 7.
 
 use chrono::{Datelike, NaiveDate};
 
@@ -144,12 +146,12 @@ pub struct Target {
 }
 
 impl Target {
-    /// Lower end less the buffer, C.
+    /// Lower end of the range the buffer leaves, C.
     pub fn low_kept_c(&self) -> Option<f64> {
         self.low_c.map(|t| t + self.buffer_c)
     }
 
-    /// Upper end less the buffer, C.
+    /// Upper end of the range the buffer leaves, C.
     pub fn high_kept_c(&self) -> Option<f64> {
         self.high_c.map(|t| t - self.buffer_c)
     }

@@ -2,12 +2,14 @@
 
 use std::path::{Path, PathBuf};
 
+use chrono::{DateTime, FixedOffset};
 use include_dir::{Dir, include_dir};
 use sha2::{Digest, Sha256};
 
-use crate::problem::{Problem, any_refused};
+use crate::problem::Problem;
 use crate::profile::{Profile, Raw};
 use crate::site::Site;
+use crate::units::System;
 
 use super::cast::{Told, cast};
 use super::text::{self, Format, Source};
@@ -172,6 +174,11 @@ impl Folder {
         out
     }
 
+    /// When the newest cast of the folder was taken.
+    pub fn newest_time(&self) -> Option<DateTime<FixedOffset>> {
+        self.casts().iter().filter_map(|l| l.raw.as_ref()?.taken).max()
+    }
+
     /// What the site file says of a cast of that file name.
     fn told(&self, name: &str) -> Told {
         let listed = self.site.casts.iter().find(|c| c.file == name || c.file == base(name));
@@ -332,10 +339,10 @@ fn inside(file: &str) -> Option<Result<Source, Problem>> {
     Some(text::read_from(file, contents, format))
 }
 
-/// Every problem of a site folder: the site file, then each cast.
-pub fn check(named: &str) -> Vec<Problem> {
+/// Every problem of a site folder: the site file, then each cast; and the units its user reads.
+pub fn check(named: &str) -> (Vec<Problem>, System) {
     match Folder::open(named) {
-        Err(problems) => problems,
+        Err(problems) => (problems, System::default()),
         Ok(folder) => {
             let mut problems = folder.notes.clone();
             let casts = folder.casts();
@@ -343,12 +350,7 @@ pub fn check(named: &str) -> Vec<Problem> {
             for listed in &casts {
                 problems.extend(folder.profile_of(listed).1);
             }
-            problems
+            (problems, folder.site.units.system())
         }
     }
-}
-
-/// Whether a folder can be used.
-pub fn is_sound(problems: &[Problem]) -> bool {
-    !any_refused(problems)
 }

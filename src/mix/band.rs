@@ -1,4 +1,6 @@
 //! The band: seeded perturbed cases, the same for every mix.
+//!
+//! Methods: `docs/methods.md`, section 9.
 
 use rand_distr::{Distribution, StandardNormal, Uniform};
 use rand_pcg::Pcg64Mcg;

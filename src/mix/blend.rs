@@ -1,4 +1,6 @@
 //! One setting on one column: the zone and water of each level, and the release they blend to.
+//!
+//! Methods: `docs/methods.md`, section 4.
 
 use crate::profile::Column;
 use crate::withdrawal::{Draw, Zone, zone};

@@ -1,31 +1,22 @@
 //! A setting judged: what stops it, what it gives, how it stands, and what to beware of.
 
-use std::f64::consts::PI;
-
 use chrono::NaiveDate;
 
 use crate::intake;
 use crate::problem::Problem;
-use crate::profile::{Column, Profile};
+use crate::profile::Profile;
 use crate::site::Site;
 use crate::target::{Standing, Target};
 use crate::units::say;
 use crate::withdrawal::CrestForm;
 
 use super::band::{Perturbed, Spread};
-use super::blend::{Blend, Drawn, draw_levels, overlapping, release, release_joined};
+use super::beware;
+use super::blend::{Blend, Drawn, draw_levels, release};
 use super::levels::{Setting, groups, levels};
 
-/// A zone thinner than this many opening heights is no longer that of a point sink (common practice, no source).
-const THIN_HEIGHTS: f64 = 3.0;
-/// A free limit stands in mixed water when density changes less than this over a metre there, kg/m3 (choice).
-const MIXED_KG_M3_M: f64 = 1e-3;
-/// More of the release than this from water below 1 mg/L makes the oxygen an upper bound (choice).
-const LOW_OXYGEN_SHARE: f64 = 0.05;
 /// Flow over an ungated crest set by hand may differ from its rating by this share (choice).
 const CREST_SHARE: f64 = 0.05;
-/// Rotation of the Earth, rad/s (standard).
-const EARTH_RAD_S: f64 = 7.292_115e-5;
 
 /// How the release stands against one target.
 #[derive(Debug, Clone, PartialEq)]
@@ -46,7 +37,7 @@ pub struct TargetStanding {
     pub oxygen_share_inside: Option<f64>,
     /// Share of the perturbed cases inside both.
     pub share_inside_both: Option<f64>,
-    /// The strictest rule of its point on that date.
+    /// The strictest rule valid on that date.
     pub governs: bool,
 }
 
@@ -144,10 +135,10 @@ pub fn judge(
     let targets = standings(site, &release, &spread, date);
     let mut warnings = Vec::new();
     limits(site, setting, profile.pool_m, &release, &mut warnings);
-    zones(site, column, &drawn, &mut warnings);
-    overlaps(column, &drawn, &release, &mut warnings);
-    oxygen(site, &drawn, &release, &mut warnings);
-    cautions(site, column, &drawn, &mut warnings);
+    beware::zones(site, column, &drawn, &mut warnings);
+    beware::overlaps(column, &drawn, &release, &mut warnings);
+    beware::oxygen(site, &drawn, &release, &mut warnings);
+    beware::cautions(site, column, &drawn, &mut warnings);
     Some(Mix { levels: drawn, release, spread, targets, not_checked: not_checked(site, setting), warnings })
 }
 
@@ -272,129 +263,6 @@ fn limits(site: &Site, setting: &Setting, pool_m: f64, release: &Blend, warnings
             format!("release.max: {} in total, {} allowed", say::m3s(total, 2), say::m3s(most, 2)),
             "release less",
         );
-    }
-}
-
-fn level_name(site: &Site, drawn: &Drawn) -> String {
-    let names: Vec<&str> = drawn.level.outlets.iter().map(|&i| site.outlets[i].name.as_str()).collect();
-    names.join(", ")
-}
-
-/// Where the zone's assumptions are thin.
-fn zones(site: &Site, column: &Column, drawn: &[Drawn], warnings: &mut Vec<Problem>) {
-    for d in drawn {
-        let Some(zone) = &d.zone else { continue };
-        let name = level_name(site, d);
-        for (side, what) in [(&zone.lower, "lower"), (&zone.upper, "upper")] {
-            if side.end == crate::withdrawal::End::Boundary {
-                continue;
-            }
-            let change =
-                (column.density_kg_m3(side.limit_m - 0.5) - column.density_kg_m3(side.limit_m + 0.5)).abs();
-            if change < MIXED_KG_M3_M {
-                warnings.push(Problem::flag(
-                    "mixed-layer-limit",
-                    format!(
-                        "the {what} limit of the zone of {name} ({}) lies in mixed water, where nothing holds it",
-                        say::m(side.limit_m, 2)
-                    ),
-                    "read this limit as a guess",
-                ));
-            }
-        }
-        let reach = (zone.upper.limit_m - zone.centre_m).min(zone.centre_m - zone.lower.limit_m);
-        let free =
-            zone.upper.end == crate::withdrawal::End::Free && zone.lower.end == crate::withdrawal::End::Free;
-        if free && reach < THIN_HEIGHTS * d.level.height_m {
-            warnings.push(Problem::flag(
-                "thin-zone",
-                format!(
-                    "the zone of {name} reaches only {} from its centre, less than {THIN_HEIGHTS:.0} opening heights: its computed shape is rough",
-                    say::m(reach, 1)
-                ),
-                "",
-            ));
-        }
-    }
-    if !column.has_width() {
-        warnings.push(Problem::note(
-            "width-assumed",
-            "the pool table gives no widths: the pool is taken as equally wide at every elevation",
-        ));
-    }
-}
-
-fn overlaps(column: &Column, drawn: &[Drawn], release: &Blend, warnings: &mut Vec<Problem>) {
-    let groups = overlapping(drawn);
-    if groups.is_empty() {
-        return;
-    }
-    if let Some(joined) = release_joined(column, drawn, &groups, 1.0) {
-        warnings.push(Problem::flag(
-            "zones-overlap",
-            format!(
-                "open levels draw from each other's zones; taken as one sink they would change the release by {}, which the band includes",
-                say::dc(joined.temperature_c - release.temperature_c, 1).signed()
-            ),
-            "",
-        ));
-    }
-}
-
-fn oxygen(site: &Site, drawn: &[Drawn], release: &Blend, warnings: &mut Vec<Problem>) {
-    for d in drawn {
-        let Some(draw) = &d.draw else { continue };
-        if draw.oxygen_mg_l.is_none() {
-            let words = if draw.oxygen_missing_share >= 1.0 - 1e-9 {
-                format!("there is no oxygen reading in the zone of {}", level_name(site, d))
-            } else {
-                format!(
-                    "{:.0} % of the water of {} comes from where there is no oxygen reading",
-                    100.0 * draw.oxygen_missing_share,
-                    level_name(site, d)
-                )
-            };
-            warnings.push(Problem::flag(
-                "oxygen-missing",
-                format!("{words}: release oxygen stays unknown"),
-                "measure oxygen over the whole depth next time",
-            ));
-        }
-    }
-    if release.oxygen_low_share > LOW_OXYGEN_SHARE && release.oxygen_mg_l.is_some() {
-        warnings.push(Problem::flag(
-            "oxygen-upper-bound",
-            format!(
-                "{:.0} % of the release comes from water below 1 mg/L, whose sulphide, iron and manganese take up oxygen after mixing",
-                100.0 * release.oxygen_low_share
-            ),
-            "read the release oxygen as an upper bound",
-        ));
-    }
-}
-
-fn cautions(site: &Site, column: &Column, drawn: &[Drawn], warnings: &mut Vec<Problem>) {
-    let spills = drawn.iter().any(|d| d.level.outlets.iter().any(|&i| site.outlets[i].is_crest()));
-    if spills {
-        warnings.push(Problem::flag(
-            "dissolved-gas",
-            "spill takes up air; total dissolved gas is not predicted",
-            "measure it below the dam (110 % is the usual criterion)",
-        ));
-    }
-    if let (Some(latitude), Some(width)) = (site.place.latitude_deg, site.pool.width_m(column.surface_m())) {
-        let (bed, surface) = (column.bed_m(), column.surface_m());
-        let lower = (bed, column.density_kg_m3(bed));
-        let upper = (surface, column.density_kg_m3(surface));
-        let buoyancy = crate::profile::buoyancy_s2(lower, upper).max(0.0).sqrt();
-        let coriolis = (2.0 * EARTH_RAD_S * latitude.to_radians().sin()).abs();
-        if coriolis > 0.0 && buoyancy * (surface - bed) / (PI * coriolis) < width {
-            warnings.push(Problem::flag(
-                "rotation",
-                "the pool is so wide that the Earth's rotation matters: zones may be thicker than computed",
-                "",
-            ));
-        }
     }
 }
 

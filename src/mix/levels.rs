@@ -1,4 +1,6 @@
 //! Outlets at one elevation act as one sink: the levels of a site, and what a setting makes of them.
+//!
+//! Methods: `docs/methods.md`, section 4.
 
 use std::f64::consts::PI;
 
@@ -11,8 +13,6 @@ use crate::withdrawal::{CrestForm, Opening, Sink};
 const SAME_CREST_M: f64 = 0.1;
 /// Angles this near are equal, rad.
 const SAME_ANGLE: f64 = 1e-6;
-/// Leaks draw as slots of this share of the full area where only their place matters (choice).
-const LEAK_AREA_SHARE: f64 = 0.01;
 
 /// One gate of a setting.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -113,7 +113,7 @@ pub fn levels(
                 let outlet = &site.outlets[index];
                 let leaking = opening <= 0.0;
                 let part = outlet.open_part(if leaking { 1.0 } else { opening });
-                let area = part.area_m2 * if leaking { LEAK_AREA_SHARE } else { 1.0 };
+                let area = if leaking { intake::leak_area_m2(outlet) } else { part.area_m2 };
                 sums[0] += area;
                 sums[1] += area * part.centre_m;
                 sums[2] += flow;

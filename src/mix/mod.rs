@@ -1,6 +1,7 @@
 //! One setting: what each level draws, what the blend is, how sure, and how it stands.
 
 mod band;
+mod beware;
 mod blend;
 mod judge;
 mod levels;

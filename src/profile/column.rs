@@ -2,36 +2,17 @@
 //! computed from them where it is asked for, and levelled so that it never falls with depth.
 //!
 //! Everything that needs a limit or a shape asks the column; what is blended is taken from it as measured.
+//!
+//! Methods: `docs/methods.md`, section 2.
 
 use crate::water;
 
 use super::levelled::levelled;
+use super::samples::{
+    OxygenSample, Sample, crossing_m, density_turn_m, interpolate, lerp, oxygen_at, oxygen_reach, sample_at,
+};
 use super::slices::Slices;
 
-/// Water at one elevation.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub struct Sample {
-    /// Elevation, m.
-    pub elevation_m: f64,
-    /// Temperature, C.
-    pub temperature_c: f64,
-    /// Dissolved solids, g/kg.
-    pub salt_g_per_kg: f64,
-    /// Suspended solids, mg/L.
-    pub suspended_mg_l: f64,
-}
-
-/// Oxygen at one elevation.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub struct OxygenSample {
-    /// Elevation, m.
-    pub elevation_m: f64,
-    /// Dissolved oxygen, mg/L.
-    pub oxygen_mg_l: f64,
-}
-
-/// How far oxygen may be carried beyond its last sample where samples stand closer, m (choice).
-pub const OXYGEN_CARRY_M: f64 = 2.0;
 /// Oxygen below this makes sulphide, iron and manganese likely, mg/L (common practice, no source).
 pub const OXYGEN_LOW_MG_L: f64 = 1.0;
 /// Nodes closer than this are one, m.
@@ -104,11 +85,6 @@ impl Segment {
     }
 }
 
-#[inline]
-fn lerp(ends: [f64; 2], t: f64) -> f64 {
-    ends[0] + t * (ends[1] - ends[0])
-}
-
 /// The column, ready to be asked.
 #[derive(Debug, Clone)]
 pub struct Column {
@@ -156,7 +132,7 @@ impl Column {
         let mut nodes = vec![bed_m, surface_m];
         nodes.extend(samples.iter().map(|s| s.elevation_m));
         if given.is_none() {
-            nodes.extend(samples.windows(2).filter_map(|w| greatest_density_between(&w[0], &w[1])));
+            nodes.extend(samples.windows(2).filter_map(|w| density_turn_m(&w[0], &w[1], solids_kg_m3)));
         }
         tidy(&mut nodes, bed_m, surface_m);
         let measured: Vec<f64> = nodes
@@ -165,8 +141,7 @@ impl Column {
                 if let Some(given) = given {
                     return interpolate(samples, z, |i| given[i]);
                 }
-                let s = sample_at(samples, z);
-                water::density_kg_m3(s.temperature_c, s.salt_g_per_kg, s.suspended_mg_l, solids_kg_m3)
+                sample_at(samples, z).density_kg_m3(solids_kg_m3)
             })
             .collect();
         let level = levelled(&nodes, &measured);
@@ -174,7 +149,7 @@ impl Column {
         let mut all = nodes.clone();
         let reach = oxygen_reach(oxygen);
         all.extend(oxygen.iter().map(|o| o.elevation_m));
-        all.extend(oxygen.windows(2).filter_map(|w| crossing(w, OXYGEN_LOW_MG_L)));
+        all.extend(oxygen.windows(2).filter_map(|w| crossing_m(w, OXYGEN_LOW_MG_L)));
         if let Some((low, high)) = reach {
             all.extend([low, high]);
         }
@@ -317,74 +292,5 @@ fn tidy(nodes: &mut Vec<f64>, bed_m: f64, surface_m: f64) {
     // the surface itself must survive a sample just below it
     if let Some(last) = nodes.last_mut() {
         *last = surface_m;
-    }
-}
-
-/// Linear between neighbours, held beyond the ends.
-fn interpolate(samples: &[Sample], z: f64, value: impl Fn(usize) -> f64) -> f64 {
-    let i = samples.partition_point(|s| s.elevation_m <= z);
-    if i == 0 {
-        return value(0);
-    }
-    if i == samples.len() {
-        return value(i - 1);
-    }
-    let (a, b) = (samples[i - 1].elevation_m, samples[i].elevation_m);
-    lerp([value(i - 1), value(i)], (z - a) / (b - a))
-}
-
-fn sample_at(samples: &[Sample], z: f64) -> Sample {
-    Sample {
-        elevation_m: z,
-        temperature_c: interpolate(samples, z, |i| samples[i].temperature_c),
-        salt_g_per_kg: interpolate(samples, z, |i| samples[i].salt_g_per_kg),
-        suspended_mg_l: interpolate(samples, z, |i| samples[i].suspended_mg_l),
-    }
-}
-
-/// Elevation between two samples at which temperature is that of greatest density.
-fn greatest_density_between(a: &Sample, b: &Sample) -> Option<f64> {
-    let warmest = a.temperature_c.max(b.temperature_c);
-    let coldest = a.temperature_c.min(b.temperature_c);
-    // fresh water is densest at 3.98 C; salt only lowers that, so warmer stretches need no search
-    if coldest > 4.0 || warmest < 0.0 {
-        return None;
-    }
-    let densest = water::temperature_of_greatest_density_c(0.5 * (a.salt_g_per_kg + b.salt_g_per_kg));
-    if !(coldest < densest && densest < warmest) {
-        return None;
-    }
-    let t = (densest - a.temperature_c) / (b.temperature_c - a.temperature_c);
-    Some(a.elevation_m + t * (b.elevation_m - a.elevation_m))
-}
-
-fn crossing(pair: &[OxygenSample], level: f64) -> Option<f64> {
-    let (a, b) = (&pair[0], &pair[1]);
-    let (fa, fb) = (a.oxygen_mg_l - level, b.oxygen_mg_l - level);
-    (fa * fb < 0.0).then(|| a.elevation_m + (b.elevation_m - a.elevation_m) * fa / (fa - fb))
-}
-
-/// From where to where oxygen readings reach: one sample spacing, or [`OXYGEN_CARRY_M`] where that is
-/// more, beyond the last sample on either side.
-fn oxygen_reach(oxygen: &[OxygenSample]) -> Option<(f64, f64)> {
-    let (first, last) = (oxygen.first()?, oxygen.last()?);
-    let spacing = |pair: Option<&[OxygenSample]>| {
-        pair.map_or(0.0, |p| p[1].elevation_m - p[0].elevation_m).max(OXYGEN_CARRY_M)
-    };
-    Some((
-        first.elevation_m - spacing(oxygen.windows(2).next()),
-        last.elevation_m + spacing(oxygen.windows(2).last()),
-    ))
-}
-
-fn oxygen_at(oxygen: &[OxygenSample], z: f64) -> f64 {
-    let i = oxygen.partition_point(|o| o.elevation_m <= z);
-    match (i.checked_sub(1).and_then(|k| oxygen.get(k)), oxygen.get(i)) {
-        (Some(a), Some(b)) => {
-            lerp([a.oxygen_mg_l, b.oxygen_mg_l], (z - a.elevation_m) / (b.elevation_m - a.elevation_m))
-        }
-        (Some(a), None) | (None, Some(a)) => a.oxygen_mg_l,
-        // never read: such stretches are marked missing
-        (None, None) => 0.0,
     }
 }

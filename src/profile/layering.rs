@@ -1,10 +1,13 @@
 //! How the water is layered: thermocline, stability, mixed layer, oxygen minimum, heat.
+//!
+//! Methods: `docs/methods.md`, section 2.
 
 use crate::site::Pool;
 use crate::water::{CP_REF_J_KG_K, G_M_S2, RHO_REF_KG_M3};
 
 use super::cast::Profile;
-use super::column::{Column, OxygenSample, Sample};
+use super::column::Column;
+use super::samples::{OxygenSample, Sample};
 
 /// Gradients are taken over at least this height, m: closer samples would make noise the thermocline (choice).
 const GRADIENT_M: f64 = 1.0;

@@ -1,14 +1,16 @@
 //! The cast under another pool elevation.
+//!
+//! Methods: `docs/methods.md`, section 2.
 
 use crate::problem::Problem;
 use crate::site::Site;
 use crate::units::say;
 
 use super::cast::Profile;
-use super::column::{OxygenSample, Sample};
 use super::layering::mixed_base_m;
+use super::samples::{OxygenSample, Sample};
 
-/// A pool moved by more than this against its cast is flagged, m.
+/// A pool moved by more than this against its cast is flagged, m (choice).
 const MOVED_M: f64 = 1.0;
 
 impl Profile {

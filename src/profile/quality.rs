@@ -1,17 +1,23 @@
 //! Is the cast sound: gaps, spikes, inversions, oxygen above saturation, stretches beyond the samples.
+//!
+//! Methods: `docs/methods.md`, section 2.
 
 use crate::problem::Problem;
 use crate::site::Site;
 use crate::units::say;
 use crate::water;
 
-use super::column::{OxygenSample, Sample};
 use super::levelled::levelled;
+use super::samples::{OxygenSample, Sample};
 
 /// Inversions up to this density difference are ordinary, kg/m3 (choice; most real casts invert a little).
 const INVERSION_KG_M3: f64 = 0.01;
 /// And up to the density of this temperature difference there, C (choice).
 const INVERSION_C: f64 = 0.25;
+/// Inversions up to the density of this temperature difference are a sensor's noise, C (choice).
+const NOISE_C: f64 = 0.1;
+/// And up to this density difference, kg/m3 (choice: near 4 C temperature hardly makes any).
+const NOISE_KG_M3: f64 = 0.004;
 /// Inversions smaller than this are below what a sensor resolves and only counted in the note, kg/m3.
 const INVERSION_SEEN_KG_M3: f64 = 1e-4;
 /// A one-row spike needs both neighbours this near, m: farther apart, a real layer may lie between (choice).
@@ -92,6 +98,21 @@ fn stands_off(before: f64, here: f64, after: f64, limit: f64) -> Option<f64> {
     (a * b > 0.0 && a.abs().min(b.abs()) > limit).then(|| a.abs().min(b.abs()) * a.signum())
 }
 
+/// Rows that stand off both near neighbours, with how far; of two spikes side by side only the larger, since a
+/// slipped reading makes its neighbour stand off too.
+fn spike_rows(rows: &[(f64, f64)], limit: f64) -> Vec<(usize, f64)> {
+    let near = |w: &[(f64, f64)]| w[2].0 - w[1].0 <= SPIKE_REACH_M && w[1].0 - w[0].0 <= SPIKE_REACH_M;
+    let found: Vec<(usize, f64)> = rows
+        .windows(3)
+        .enumerate()
+        .filter(|(_, w)| near(w))
+        .filter_map(|(i, w)| Some((i + 1, stands_off(w[0].1, w[1].1, w[2].1, limit)?)))
+        .collect();
+    let beside = |a: usize, b: usize| a.abs_diff(b) == 1;
+    let lesser = |row: usize, off: f64| found.iter().any(|o| beside(o.0, row) && o.1.abs() > off.abs());
+    found.iter().copied().filter(|&(row, off)| !lesser(row, off)).collect()
+}
+
 fn spikes(
     site: &Site,
     samples: &[Sample],
@@ -100,51 +121,40 @@ fn spikes(
     oxygen_lines: &[usize],
     flags: &mut Vec<Problem>,
 ) {
-    let near = |z: [f64; 3]| z[2] - z[1] <= SPIKE_REACH_M && z[1] - z[0] <= SPIKE_REACH_M;
-    for (w, line) in samples.windows(3).zip(lines.iter().skip(1)) {
-        if !near([w[0].elevation_m, w[1].elevation_m, w[2].elevation_m]) {
-            continue;
-        }
-        let off = stands_off(w[0].temperature_c, w[1].temperature_c, w[2].temperature_c, site.checks.spike_c);
-        if let Some(off) = off {
-            flags.push(
-                Problem::flag(
-                    "spike",
-                    format!(
-                        "temperature {} at {} is {} off both neighbours; kept",
-                        say::c(w[1].temperature_c, 2),
-                        say::m(w[1].elevation_m, 2),
-                        say::dc(off, 2).signed()
-                    ),
-                    "blank the cell if the sensor slipped",
-                )
-                .on_line(*line),
-            );
-        }
+    let mut flag = |words: String, line: usize| {
+        flags.push(Problem::flag("spike", words, "blank the cell if the sensor slipped").on_line(line));
+    };
+    let rows: Vec<(f64, f64)> = samples.iter().map(|s| (s.elevation_m, s.temperature_c)).collect();
+    for (i, off) in spike_rows(&rows, site.checks.spike_c) {
+        let words = format!(
+            "temperature {} at {} is {} off both neighbours; kept",
+            say::c(rows[i].1, 2),
+            say::m(rows[i].0, 2),
+            say::dc(off, 2).signed()
+        );
+        flag(words, lines[i]);
     }
-    for (w, line) in oxygen.windows(3).zip(oxygen_lines.iter().skip(1)) {
-        if !near([w[0].elevation_m, w[1].elevation_m, w[2].elevation_m]) {
-            continue;
-        }
-        let off = stands_off(w[0].oxygen_mg_l, w[1].oxygen_mg_l, w[2].oxygen_mg_l, site.checks.spike_mg_l);
-        if let Some(off) = off {
-            flags.push(
-                Problem::flag(
-                    "spike",
-                    format!(
-                        "oxygen {:.2} mg/L at {} is {off:+.2} mg/L off both neighbours; kept",
-                        w[1].oxygen_mg_l,
-                        say::m(w[1].elevation_m, 2)
-                    ),
-                    "blank the cell if the sensor slipped",
-                )
-                .on_line(*line),
-            );
-        }
+    let rows: Vec<(f64, f64)> = oxygen.iter().map(|o| (o.elevation_m, o.oxygen_mg_l)).collect();
+    for (i, off) in spike_rows(&rows, site.checks.spike_mg_l) {
+        let words = format!(
+            "oxygen {:.2} mg/L at {} is {off:+.2} mg/L off both neighbours; kept",
+            rows[i].1,
+            say::m(rows[i].0, 2)
+        );
+        flag(words, oxygen_lines[i]);
     }
 }
 
-/// Flags stretches where denser water lies above lighter, largest first in words; returns whether one is large.
+/// Density that a temperature difference makes at a temperature, kg/m3.
+fn density_of_kg_m3(difference_c: f64, temperature_c: f64) -> f64 {
+    (water::pure_water_kg_m3(temperature_c + difference_c) - water::pure_water_kg_m3(temperature_c)).abs()
+}
+
+/// A stretch that inverts: by how much (kg/m3), from which sample to which.
+type Inverted = (f64, usize, usize);
+
+/// Says where denser water lies above lighter: a note within a sensor's noise, a flag beyond it, a flag of its
+/// own for each large stretch. Returns whether one is large.
 fn inversions(site: &Site, samples: &[Sample], lines: &[usize], flags: &mut Vec<Problem>) -> bool {
     let z: Vec<f64> = samples.iter().map(|s| s.elevation_m).collect();
     let density: Vec<f64> = samples
@@ -154,7 +164,8 @@ fn inversions(site: &Site, samples: &[Sample], lines: &[usize], flags: &mut Vec<
         })
         .collect();
     let level = levelled(&z, &density);
-    let mut small: Vec<(f64, usize, usize)> = Vec::new();
+    let mut seen: Vec<Inverted> = Vec::new();
+    let mut noise: Vec<Inverted> = Vec::new();
     let mut large = false;
     let mut from = 0;
     while from < level.len() {
@@ -171,8 +182,7 @@ fn inversions(site: &Site, samples: &[Sample], lines: &[usize], flags: &mut Vec<
         }
         if to > from && rise >= INVERSION_SEEN_KG_M3 {
             let t = samples[from].temperature_c;
-            let per_c = (water::pure_water_kg_m3(t + INVERSION_C) - water::pure_water_kg_m3(t)).abs();
-            if rise > per_c.max(INVERSION_KG_M3) {
+            if rise > density_of_kg_m3(INVERSION_C, t).max(INVERSION_KG_M3) {
                 large = true;
                 flags.push(
                     Problem::flag(
@@ -186,26 +196,37 @@ fn inversions(site: &Site, samples: &[Sample], lines: &[usize], flags: &mut Vec<
                     )
                     .on_line(lines[from]),
                 );
+            } else if rise > density_of_kg_m3(NOISE_C, t).max(NOISE_KG_M3) {
+                seen.push((rise, from, to));
             } else {
-                small.push((rise, from, to));
+                noise.push((rise, from, to));
             }
         }
         from = to + 1;
     }
-    if let Some(&(rise, from, to)) = small.iter().max_by(|a, b| a.0.total_cmp(&b.0)) {
-        flags.push(
-            Problem::flag(
-                "inversion",
-                format!(
-                    "denser water lies a little above lighter in {} stretch(es), at most by {rise:.4} kg/m3, between {} and {}; levelled for the zone only",
-                    small.len(),
-                    say::m(z[from], 2),
-                    say::m(z[to], 2)
-                ),
-                "",
-            )
-            .on_line(lines[from]),
+    let most = |list: &[Inverted]| list.iter().copied().max_by(|a, b| a.0.total_cmp(&b.0));
+    let count = |list: &[Inverted]| match list.len() {
+        1 => "one stretch".to_owned(),
+        n => format!("{n} stretches"),
+    };
+    if let Some((rise, from, to)) = most(&seen) {
+        let words = format!(
+            "denser water lies a little above lighter in {}, at most by {rise:.4} kg/m3, between {} and {}; levelled for the zone only",
+            count(&seen),
+            say::m(z[from], 2),
+            say::m(z[to], 2)
         );
+        flags.push(
+            Problem::flag("inversion", words, "most casts do this; a slow sensor does it more")
+                .on_line(lines[from]),
+        );
+    }
+    if let Some((rise, from, _)) = most(&noise) {
+        let words = format!(
+            "denser water above lighter within a sensor's noise in {}, at most by {rise:.4} kg/m3; levelled for the zone only",
+            count(&noise)
+        );
+        flags.push(Problem::note("levelled", words).on_line(lines[from]));
     }
     large
 }
@@ -219,6 +240,7 @@ fn saturation(
     flags: &mut Vec<Problem>,
 ) {
     let pressure = site.surface_pressure_atm(pool_m);
+    let pressure_words = if site.place.altitude_m.is_some() { "" } else { " at sea level" };
     let mut over: Vec<(f64, &OxygenSample, usize)> = Vec::new();
     for (o, line) in oxygen.iter().zip(lines) {
         let near = samples.iter().min_by(|a, b| {
@@ -235,7 +257,7 @@ fn saturation(
             Problem::flag(
                 "oxygen-above-saturation",
                 format!(
-                    "{} oxygen reading(s) above {:.0} % of saturation, at most {:.0} % ({:.2} mg/L at {}); kept",
+                    "{} oxygen reading(s) above {:.0} % of saturation{pressure_words}, at most {:.0} % ({:.2} mg/L at {}); kept",
                     over.len(),
                     100.0 * site.checks.oxygen_share,
                     100.0 * share,

@@ -2,7 +2,7 @@
 
 use super::column::{OXYGEN_LOW_MG_L, Segment};
 
-/// The column is cut at every node, and no slice is thicker than this share of the water depth.
+/// The column is cut at every node, and no slice is thicker than this share of the water depth (choice).
 const THICKEST: f64 = 1.0 / 100.0;
 /// Abscissa of the two-point Gauss rule on -1..1 (1/sqrt 3; exact for cubics).
 pub(super) const GAUSS_TWO: f64 = 0.577_350_269_189_625_8;

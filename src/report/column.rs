@@ -17,7 +17,7 @@ use crate::plot::Scale;
 use crate::problem::harmless;
 use crate::profile::Profile;
 use crate::site::Site;
-use crate::units::{Dimension, System, figure};
+use crate::units::{Dimension, System, Unit, figure};
 
 /// Rows of the picture.
 const ROWS: usize = 22;
@@ -25,6 +25,8 @@ const ROWS: usize = 22;
 const NAMES: usize = 15;
 /// Width of the curves.
 const CURVES: usize = 41;
+/// Least span of the temperature scale, C: less would draw the sensor's noise.
+const LEAST_C: f64 = 4.0;
 /// Zones drawn beside each other.
 const ZONES: usize = 6;
 
@@ -78,13 +80,14 @@ fn temperature_scale(profile: &Profile, system: System) -> Scale {
     let unit = system.unit(Dimension::Temperature);
     let values = || profile.samples.iter().map(|s| unit.from_si(s.temperature_c));
     let (low, high) = (values().fold(f64::INFINITY, f64::min), values().fold(f64::NEG_INFINITY, f64::max));
-    Scale::round(low, high, 8)
+    let least = Unit::of_difference(unit).from_si(LEAST_C);
+    Scale::round(low, high, least, 8)
 }
 
 fn oxygen_scale(profile: &Profile) -> Option<Scale> {
     let values = || profile.oxygen.iter().map(|o| o.oxygen_mg_l);
     let (low, high) = (values().reduce(f64::min)?, values().reduce(f64::max)?);
-    Some(Scale::round(low.min(0.0), high, 8))
+    Some(Scale::round(low.min(0.0), high, 1.0, 8))
 }
 
 fn heading(temperature: &Scale, oxygen: Option<&Scale>, system: System) -> String {

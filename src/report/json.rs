@@ -6,10 +6,10 @@ use crate::mix::{Drawn, Mix, TargetStanding};
 use crate::problem::{Problem, Weight};
 use crate::site::Site;
 use crate::tasks::{Context, MixAnswer, PoolAnswer};
-use crate::units::System;
+use crate::units::{System, in_system};
 use crate::withdrawal::{End, Opening};
 
-use super::sentence::{METHOD, caution, sentence};
+use super::sentence::{METHOD, caution};
 
 #[derive(Serialize)]
 struct Head {
@@ -204,7 +204,7 @@ pub fn mix(context: &Context, answer: &MixAnswer) -> String {
             .mix
             .warnings
             .iter()
-            .map(|p| WarningJson { kind: p.kind, text: sentence(p, System::Si) })
+            .map(|p| WarningJson { kind: p.kind, text: p.sentence(System::Si) })
             .collect(),
         caution: caution(),
     };
@@ -274,8 +274,8 @@ pub fn check(problems: &[Problem]) -> String {
             file: p.place.file.clone(),
             line: p.place.line,
             path: p.place.path.clone(),
-            text: sentence(p, System::Si),
-            cure: p.cure.clone(),
+            text: p.sentence(System::Si),
+            cure: in_system(&p.cure, System::Si),
         })
         .collect();
     written(&list)
@@ -301,7 +301,7 @@ fn head(context: &Context, more_flags: &[Problem]) -> Head {
             .iter()
             .chain(more_flags)
             .filter(|p| p.weight == weight)
-            .map(|p| FlagJson { row: p.place.line, kind: p.kind, text: sentence(p, System::Si) })
+            .map(|p| FlagJson { row: p.place.line, kind: p.kind, text: p.sentence(System::Si) })
             .collect()
     };
     Head {

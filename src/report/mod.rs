@@ -6,4 +6,4 @@ mod sentence;
 pub mod text;
 
 pub use column::drawn_column;
-pub use sentence::{METHOD, caution, flags_of, sentence};
+pub use sentence::{METHOD, caution, flags_of};

@@ -1,7 +1,6 @@
 //! Sentences that every output shares.
 
-use crate::problem::{Problem, Weight, harmless};
-use crate::units::System;
+use crate::problem::{Problem, Weight};
 
 /// How the figures were made.
 pub const METHOD: &str = "point-sink withdrawal (WES H-73-4, E-87-2), samples as measured, levelled density; 10-90 % of seeded perturbed cases";
@@ -9,11 +8,6 @@ pub const METHOD: &str = "point-sink withdrawal (WES H-73-4, E-87-2), samples as
 /// What every output says, on one line.
 pub fn caution() -> &'static str {
     "Advisory estimate. Operations defer to the dam-safety authority and the approved water control plan; a responsible licensed engineer decides. Warn downstream users of changes in stage and cold water."
-}
-
-/// A problem's words in the units shown, harmless.
-pub fn sentence(problem: &Problem, _system: System) -> String {
-    harmless(&problem.words)
 }
 
 /// Flags and notes of a list, flags first, each in the order it was found.

@@ -1,4 +1,6 @@
 //! The pool table: elevation, area, volume and width, and its look-ups.
+//!
+//! Methods: `docs/methods.md`, section 2.
 
 use crate::problem::Problem;
 use crate::units::say;

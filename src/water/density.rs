@@ -2,6 +2,8 @@
 //!
 //! Density in place must never be differenced over depth: compression alone adds about 0.9 kg/m3 in 200 m
 //! and would pass for stratification. Hence no pressure term here.
+//!
+//! Methods: `docs/methods.md`, section 1.
 
 /// Density of the grains of suspended sediment unless the site says otherwise, kg/m3 (that of quartz; choice).
 pub const SEDIMENT_DENSITY_KG_M3: f64 = 2650.0;

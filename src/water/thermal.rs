@@ -1,4 +1,6 @@
 //! Heat of water: specific heat, latent heat, viscosity; and the fixed pair that heat content is kept in.
+//!
+//! Methods: `docs/methods.md`, section 1.
 
 /// Density with which heat content is kept, kg/m3 (choice: water of 15 C). It and [`CP_REF_J_KG_K`] are
 /// fixed so that mixing conserves heat exactly; their product is within 1 % of the true one at 0-40 C.

@@ -1,12 +1,12 @@
 //! Water over an edge: spillways, shutters, stacked leaves.
-
-use std::f64::consts::PI;
+//!
+//! Methods: `docs/methods.md`, section 3.
 
 use crate::profile::Column;
 use crate::water::G_M_S2;
 
 use super::limit::{Reach, Way};
-use super::zone::{End, Side, Zone, port};
+use super::zone::{End, Side, Zone};
 
 /// Coefficient c of the lower limit, q = c (Z0 + H) sqrt(g Z0 drho/rho) (Grace 1971, WES TR H-71-4; recalled).
 const GRACE: f64 = 0.32;
@@ -53,6 +53,34 @@ pub(super) fn crest(
     if head <= 0.0 {
         return None;
     }
+    let bed = column.bed_m();
+    let (mut limit_m, mut bed_flow) = over(column, crest_m, flow, length_m, form);
+    if crest_m - limit_m > length_m {
+        let (round_m, round_flow) = round(column, crest_m + 0.5 * head, flow);
+        if form == CrestForm::Larger {
+            limit_m = limit_m.min(round_m);
+            bed_flow = bed_flow.min(round_flow);
+        } else {
+            // not shallower than the crest is long, or the zone would jump back where it gets that deep
+            limit_m = limit_m.max(round_m).min(crest_m - length_m);
+            bed_flow = bed_flow.max(round_flow);
+        }
+    }
+    let lower = Side {
+        limit_m,
+        end: if limit_m > bed { End::Free } else { End::Boundary },
+        boundary_flow_m3s: Some(bed_flow),
+        free_weight: if limit_m > bed { 1.0 } else { (bed_flow / flow).min(1.0) },
+    };
+    let upper =
+        Side { limit_m: column.surface_m(), end: End::Boundary, boundary_flow_m3s: None, free_weight: 0.0 };
+    Some(Zone::between(lower, upper, crest_m))
+}
+
+/// Lower limit of water drawn over the edge alone, m, the bed where none comes before it; and the flow that
+/// just meets the bed, m3/s.
+fn over(column: &Column, crest_m: f64, flow: f64, length_m: f64, form: CrestForm) -> (f64, f64) {
+    let head = column.surface_m() - crest_m;
     let reach = Reach { column, centre_m: crest_m, density: column.density_kg_m3(crest_m), angle: 1.0 };
     let relation = |distance: f64, difference: f64| {
         let gravity = G_M_S2 * difference / reach.density;
@@ -64,26 +92,15 @@ pub(super) fn crest(
         };
         per_metre * length_m
     };
+    let (distance, difference) = reach.boundary(Way::Down);
     let met = reach.meet(Way::Down, |distance, difference| relation(distance, difference) - flow);
-    let bed = column.bed_m();
-    let bed_flow = relation(
-        crest_m - bed,
-        column.node_density_kg_m3().first().map_or(0.0, |rho| (rho - reach.density).abs()),
-    );
-    let lower = Side {
-        limit_m: met.unwrap_or(bed),
-        end: if met.is_some() { End::Free } else { End::Boundary },
-        boundary_flow_m3s: Some(bed_flow),
-        free_weight: if met.is_some() { 1.0 } else { (bed_flow / flow).min(1.0) },
-    };
-    let upper =
-        Side { limit_m: column.surface_m(), end: End::Boundary, boundary_flow_m3s: None, free_weight: 0.0 };
-    let over = Zone::between(lower, upper, crest_m);
-    if crest_m - lower.limit_m <= length_m {
-        return Some(over);
-    }
-    // deeper than long: the crest draws from all round, like a port
-    let round = port(column, crest_m + 0.5 * head, flow, PI);
-    let smaller = round.thickness_m() < over.thickness_m();
-    Some(if smaller == (form != CrestForm::Larger) { round } else { over })
+    (met.unwrap_or(column.bed_m()), relation(distance, difference))
+}
+
+/// The same of a port at mid-head: a crest shorter than its zone is deep draws from all round.
+fn round(column: &Column, centre_m: f64, flow: f64) -> (f64, f64) {
+    let reach = Reach { column, centre_m, density: column.density_kg_m3(centre_m), angle: 1.0 };
+    let surface_flow = reach.boundary_flow_m3s(Way::Up);
+    let met = reach.bounded(Way::Down, flow, reach.room_m(Way::Up), surface_flow);
+    (met.unwrap_or(column.bed_m()), reach.boundary_flow_m3s(Way::Down))
 }

@@ -1,4 +1,6 @@
 //! The relations behind a limit: the free limit, the boundary factor, and the root that meets a flow.
+//!
+//! Methods: `docs/methods.md`, section 3.
 
 use std::f64::consts::PI;
 
@@ -72,13 +74,17 @@ impl Reach<'_> {
         self.angle * distance * distance * (distance * G_M_S2 * difference / self.density).sqrt()
     }
 
-    /// F at the boundary, m3/s.
-    pub(super) fn boundary_flow_m3s(&self, way: Way) -> f64 {
-        let end = match way {
+    /// Distance (m) and density difference (kg/m3) from the centre-line to the boundary.
+    pub(super) fn boundary(&self, way: Way) -> (f64, f64) {
+        self.node(match way {
             Way::Up => self.column.nodes_m().len() - 1,
             Way::Down => 0,
-        };
-        let (distance, difference) = self.node(end);
+        })
+    }
+
+    /// F at the boundary, m3/s.
+    pub(super) fn boundary_flow_m3s(&self, way: Way) -> f64 {
+        let (distance, difference) = self.boundary(way);
         self.flow(distance, difference)
     }
 

@@ -1,10 +1,14 @@
 //! The velocity across a zone and the water it blends.
+//!
+//! Methods: `docs/methods.md`, section 3.
 
 use crate::profile::Column;
 
 use super::zone::{Side, Zone};
 
-/// Density differences below this do not shape the velocity, kg/m3 (choice: noise must not decide).
+/// Density differences below this do not shape the velocity, kg/m3 (choice: noise must not decide). From
+/// here to twice this they come in by degrees (choice): a bare switch would be a jump in flow, since the
+/// peak moves with it.
 pub const NOISE_KG_M3: f64 = 1e-3;
 /// A draw takes oxygen as missing when more of it than this comes from where no reading reaches (choice).
 const MISSING_SHARE: f64 = 0.05;
@@ -36,41 +40,41 @@ pub struct Draw {
 }
 
 /// Velocity on one side of the peak, relative to the greatest: v = w (1 - x)^2 + (1 - w)(1 - x^2),
-/// x = y drho/(Y drho_m).
+/// x = y drho/(Y drho_m), or y/Y where drho_m is noise.
 ///
 /// The two end forms: Bohan & Grace 1973 (recalled). The weight w is ours (choice).
 struct HalfShape {
     peak_m: f64,
     peak_density: f64,
-    /// 1/(Y drho_m), or 1/Y where the density difference is noise.
-    scale: f64,
-    by_density: bool,
-    weight: f64,
+    /// x = (z - peak) (by_distance + by_density (rho - peak density)); both signed so that x is not negative.
+    by_distance: f64,
+    by_density: f64,
+    /// 1 - 2 w: the two forms share 1 - x, which leaves 1 + (1 - 2 w) x.
+    skew: f64,
 }
 
 impl HalfShape {
     fn new(column: &Column, zone: &Zone, side: &Side) -> Self {
         let peak_density = column.density_kg_m3(zone.peak_m);
-        let span = (side.limit_m - zone.peak_m).abs();
-        let difference = (column.density_kg_m3(side.limit_m) - peak_density).abs();
-        let by_density = difference >= NOISE_KG_M3;
-        let whole = if by_density { span * difference } else { span };
+        let span = side.limit_m - zone.peak_m;
+        let difference = column.density_kg_m3(side.limit_m) - peak_density;
+        let told = (difference.abs() / NOISE_KG_M3 - 1.0).clamp(0.0, 1.0);
+        let over = |whole: f64| if whole == 0.0 { 0.0 } else { 1.0 / whole };
         Self {
             peak_m: zone.peak_m,
             peak_density,
-            scale: if whole > 0.0 { 1.0 / whole } else { 0.0 },
-            by_density,
-            weight: side.free_weight,
+            by_distance: (1.0 - told) * over(span),
+            by_density: told * over(span * difference),
+            skew: 1.0 - 2.0 * side.free_weight,
         }
     }
 
     #[inline]
     fn velocity(&self, z: f64, density: f64) -> f64 {
-        let distance = (z - self.peak_m).abs();
-        let ratio = if self.by_density { (density - self.peak_density).abs() } else { 1.0 };
-        let x = (distance * ratio * self.scale).min(1.0);
-        let rest = 1.0 - x;
-        rest * (self.weight * rest + (1.0 - self.weight) * (1.0 + x))
+        let x = (z - self.peak_m) * (self.by_distance + self.by_density * (density - self.peak_density));
+        // the limit itself is found to round-off
+        let x = if x < 1.0 { x } else { 1.0 };
+        (1.0 - x) * (1.0 + self.skew * x)
     }
 }
 

@@ -10,23 +10,21 @@ use crate::tasks::{Context, MixAnswer};
 use crate::units::{Dimension, System, figure};
 use crate::withdrawal::{End, Side};
 
-use super::{drawn_column, fitted, flags_of, flow, length, list, oxygen, step, temperature, wrapped};
+use super::{
+    drawn_column, fitted, flags_of, flow, labelled, length, list, oxygen, step, temperature, wrapped,
+};
 
 pub(super) fn body(context: &Context, answer: &MixAnswer) -> String {
     let (site, system) = (context.site(), context.system);
-    let mut out = wrapped(
-        &format!(
-            "Set      {} = {} in total",
-            setting_words(site, &answer.setting, system),
-            flow(answer.mix.release.flow_m3s, system)
-        ),
-        9,
-    );
-    let _ = writeln!(out, "Release  {}", release_line(&answer.mix, system));
+    let total = flow(answer.mix.release.flow_m3s, system);
+    let mut out =
+        labelled("Set", &format!("{} = {total} in total", setting_words(site, &answer.setting, system)));
+    out.push_str(&labelled("Release", &release_line(&answer.mix, system)));
     if let Some((now, mix)) = &answer.now {
         out.push_str(&against_now(site, now, mix, &answer.mix, system));
     }
-    out.push_str("         leaving the pool; brackets hold 10-90 % of our perturbed cases\n\n");
+    out.push_str(&labelled("", "leaving the pool; brackets hold 10-90 % of our perturbed cases"));
+    out.push('\n');
     out.push_str(&standings(site, &answer.mix, system));
     out.push_str(&levels(site, &answer.mix.levels, system));
     out.push('\n');
@@ -74,25 +72,23 @@ fn release_line(mix: &Mix, system: System) -> String {
 }
 
 fn against_now(site: &Site, now: &Setting, was: &Mix, tried: &Mix, system: System) -> String {
-    let mut out = wrapped(&format!("Now      {}", setting_words(site, now, system)), 9);
-    let _ = writeln!(out, "         {}", release_line(was, system));
-    let warmer = tried.release.temperature_c - was.release.temperature_c;
-    let aired = tried.release.oxygen_mg_l.zip(was.release.oxygen_mg_l).map(|(a, b)| a - b);
-    let _ = write!(
-        out,
-        "         the setting tried is {} {} than now",
-        step(warmer.abs(), system),
-        if warmer < 0.0 { "colder" } else { "warmer" }
-    );
-    if let Some(aired) = aired {
-        let _ = write!(
-            out,
-            ", with {:.1} mg/L {} oxygen",
-            aired.abs(),
-            if aired < 0.0 { "less" } else { "more" }
-        );
+    let mut out = labelled("Now", &setting_words(site, now, system));
+    out.push_str(&labelled("", &release_line(was, system)));
+    let shown = |by: f64, unit: &str, words: [&str; 2]| {
+        if by.abs() < 0.05 {
+            "the same to a tenth".to_owned()
+        } else {
+            format!("{:.1} {unit} {}", by.abs(), words[usize::from(by < 0.0)])
+        }
+    };
+    let unit = system.unit(Dimension::TemperatureDifference);
+    let warmer = unit.from_si(tried.release.temperature_c - was.release.temperature_c);
+    let mut words =
+        format!("against now: temperature {}", shown(warmer, unit.symbol(), ["warmer", "colder"]));
+    if let Some((a, b)) = tried.release.oxygen_mg_l.zip(was.release.oxygen_mg_l) {
+        let _ = write!(words, ", oxygen {}", shown(a - b, "mg/L", ["higher", "lower"]));
     }
-    out.push('\n');
+    out.push_str(&labelled("", &words));
     out
 }
 
@@ -145,30 +141,27 @@ fn standing_words(s: &TargetStanding, rule: &Target, system: System) -> String {
 
 fn standings(site: &Site, mix: &Mix, system: System) -> String {
     if mix.targets.is_empty() {
-        return "Target   none is valid on this date\n\n".to_owned();
+        return labelled("Target", "none is valid on this date") + "\n";
     }
     let mut out = String::new();
     for s in &mix.targets {
         let rule = &site.targets[s.target];
         let governs = if s.governs && mix.targets.len() > 1 { ": governs" } else { "" };
-        out.push_str(&wrapped(
-            &format!(
-                "Target   {} at the {} ({}, steady release){governs}",
-                harmless(&rule.name),
-                harmless(&rule.point),
-                rule.statistic.name().replace('_', " ")
-            ),
-            9,
+        let statistic = rule.statistic.name().replace('_', " ");
+        let (name, point) = (harmless(&rule.name), harmless(&rule.point));
+        out.push_str(&labelled(
+            "Target",
+            &format!("{name} at the {point} ({statistic}, steady release){governs}"),
         ));
         let source = rule.source.as_deref().map_or_else(|| "no source given".to_owned(), harmless);
-        out.push_str(&wrapped(&format!("         {} [{source}]", range(rule, system)), 9));
+        out.push_str(&labelled("", &format!("{} [{source}]", range(rule, system))));
         let percent = |share: Option<f64>| share.map(|s| format!("{:.0} %", 100.0 * s));
         let cases = match (percent(s.share_inside_both), percent(s.share_inside)) {
             (Some(both), _) => format!("{both} of perturbed cases inside"),
             (None, Some(warm)) => format!("{warm} of perturbed cases inside in temperature"),
             (None, None) => "no share known".to_owned(),
         };
-        out.push_str(&wrapped(&format!("         {}; {cases}", standing_words(s, rule, system)), 9));
+        out.push_str(&labelled("", &format!("{}; {cases}", standing_words(s, rule, system))));
     }
     out.push('\n');
     out

@@ -12,10 +12,12 @@ use crate::tasks::{Context, Freshness, MixAnswer, PoolAnswer};
 use crate::units::{Dimension, System, show};
 
 use super::column::{drawn_column, fitted};
-use super::sentence::{caution, flags_of, sentence};
+use super::sentence::{caution, flags_of};
 
 /// Width text is wrapped at.
 const WIDTH: usize = 80;
+/// Width of the margin that holds `Set`, `Release`, `Target`.
+const MARGIN: usize = 9;
 /// Flags shown before the rest is counted.
 const FLAGS: usize = 12;
 
@@ -53,10 +55,10 @@ pub fn both(context: &Context, pool: &PoolAnswer, mix: &MixAnswer) -> String {
 }
 
 /// The answer of `check`: every problem, flag and note, and a closing line.
-pub fn check(named: &str, problems: &[Problem]) -> String {
+pub fn check(named: &str, problems: &[Problem], system: System) -> String {
     let mut out = String::new();
     for p in problems {
-        let _ = writeln!(out, "{p}");
+        let _ = writeln!(out, "{}", p.text(system));
     }
     let count = |weight: Weight| problems.iter().filter(|p| p.weight == weight).count();
     let _ = writeln!(
@@ -114,13 +116,20 @@ fn list(heading: &str, problems: &[&Problem], rows: bool, system: System) -> Str
     for p in problems.iter().take(FLAGS) {
         let mark = if p.weight == Weight::Note { '-' } else { '!' };
         let row = p.place.line.filter(|_| rows).map_or_else(String::new, |l| format!(" (line {l})"));
-        out.push_str(&wrapped(&format!("  {mark} {}{row}: {}", p.kind, sentence(p, system)), 4));
+        out.push_str(&wrapped(&format!("  {mark} {}{row}: {}", p.kind, p.sentence(system)), 4));
     }
     if problems.len() > FLAGS {
         let _ = writeln!(out, "  {} more; `gatemix check` lists all", problems.len() - FLAGS);
     }
     out.push('\n');
     out
+}
+
+/// A word in the left margin and its text beside it, wrapped.
+fn labelled(label: &str, text: &str) -> String {
+    let body = wrapped(&format!("{:MARGIN$}{text}", ""), MARGIN);
+    // the margin of the first line is blank and as wide as the label's field
+    format!("{label:<MARGIN$}{}", body.get(MARGIN..).unwrap_or_default())
 }
 
 /// Words wrapped at 80 cells, later lines indented.

@@ -1,17 +1,16 @@
 //! `site.yaml` into a raw site: every unknown key, wrong type and unit at once, each with its line.
 
+mod outlets;
+
 use chrono::{Offset, Utc};
 
 use crate::problem::{Problem, any_refused};
-use crate::site::{
-    Leakage, ListedCast, Opens, Position, Raw, RawOutlet, RawPool, RawRow, RawTarget, RawWell, SetNow, Site,
-    WidthSource,
-};
+use crate::site::{ListedCast, Raw, RawPool, RawRow, RawTarget, SetNow, Site, WidthSource};
 use crate::units::{Dimension, Folder};
 
-use super::cast::{Column, TIME_CURE, parse_time};
-use super::cursor::{Map, Scalar, Value, Walk};
-use super::yaml::{Document, Node};
+use crate::files::cast::{Column, TIME_CURE, parse_time};
+use crate::files::cursor::{Map, Scalar, Value, Walk};
+use crate::files::yaml::{Document, Node};
 
 /// Reads and checks the text of a site file. The list holds every problem, flag and note with file and line;
 /// the site is `None` when any refuses.
@@ -133,10 +132,10 @@ fn raw_site(map: Map) -> Raw {
         raw.pool = pool(&read, &inner);
         inner.finish();
     }
-    raw.wells = each(&map, "wells", |m| well(&read, m));
+    raw.wells = each(&map, "wells", |m| outlets::well(&read, m));
     // asked for as required first, so that its absence is told
     if map.required("outlets").is_some() {
-        raw.outlets = each(&map, "outlets", |m| outlet(&read, m));
+        raw.outlets = each(&map, "outlets", |m| outlets::outlet(&read, m));
     }
     within(&map, "release", |m| {
         raw.release_min_m3s = read.optional(m, "min", Dimension::Flow);
@@ -263,77 +262,6 @@ fn pool_row(read: &In, row: &Value) -> Option<RawRow> {
     })
 }
 
-fn well(read: &In, map: &Map) -> RawWell {
-    RawWell {
-        name: map.required("name").and_then(|v| v.text().map(str::to_owned)),
-        conduit_m: read.required(map, "conduit", Dimension::Length),
-        max_open: number(map, "max_open"),
-        max_head_loss_m: read.optional(map, "max_head_loss", Dimension::Length),
-        max_flow_m3s: read.optional(map, "max_flow", Dimension::Flow),
-    }
-}
-
-fn outlet(read: &In, map: &Map) -> RawOutlet {
-    let mut out = RawOutlet {
-        name: map.required("name").and_then(|v| v.text().map(str::to_owned)),
-        well: text(map, "well"),
-        kind: text(map, "kind"),
-        centre_m: read.required(map, "centre", Dimension::Length),
-        height_m: read.optional(map, "height", Dimension::Length),
-        width_m: read.optional(map, "width", Dimension::Length),
-        diameter_m: read.optional(map, "diameter", Dimension::Length),
-        angle_deg: number(map, "angle"),
-        loss: number(map, "loss"),
-        discharge: number(map, "discharge"),
-        opens: opens(map),
-        gated: map.optional("gated").and_then(|v| v.boolean()),
-        min_submergence_m: read.optional(map, "min_submergence", Dimension::Length),
-        ..RawOutlet::default()
-    };
-    out.rating = map
-        .optional("rating")
-        .and_then(|v| v.list())
-        .unwrap_or_default()
-        .iter()
-        .filter_map(|row| pair(read, row, [Dimension::Length, Dimension::Flow]))
-        .collect();
-    out.positions = map
-        .optional("positions")
-        .and_then(|v| v.list())
-        .unwrap_or_default()
-        .iter()
-        .filter_map(|v| position(read, v))
-        .collect();
-    within(map, "flow", |m| {
-        out.flow_min_m3s = read.optional(m, "min", Dimension::Flow);
-        out.flow_max_m3s = read.optional(m, "max", Dimension::Flow);
-    });
-    within(map, "leakage", |m| {
-        let flow = read.required(m, "flow", Dimension::Flow);
-        let head = read.required(m, "head", Dimension::Length);
-        let range_m3s = m.optional("range").and_then(|v| pair(read, &v, [Dimension::Flow, Dimension::Flow]));
-        out.leakage = flow.zip(head).map(|(flow_m3s, head_m)| Leakage { flow_m3s, head_m, range_m3s });
-    });
-    out
-}
-
-fn opens(map: &Map) -> Opens {
-    let Some(value) = map.optional("opens") else { return Opens::Up };
-    match value.text() {
-        Some("up") | None => Opens::Up,
-        Some("down") => Opens::Down,
-        Some("both") => Opens::Both,
-        Some(_) => {
-            value.report(Problem::refused(
-                "opens",
-                "a gate opens `up`, `down` or `both`",
-                "say from which edge the open part grows",
-            ));
-            Opens::Up
-        }
-    }
-}
-
 fn pair(read: &In, value: &Value, dimensions: [Dimension; 2]) -> Option<(f64, f64)> {
     let cells = value.list()?;
     let [first, second] = cells.as_slice() else {
@@ -341,19 +269,6 @@ fn pair(read: &In, value: &Value, dimensions: [Dimension; 2]) -> Option<(f64, f6
         return None;
     };
     Some((read.quantity(first, dimensions[0])?, read.quantity(second, dimensions[1])?))
-}
-
-fn position(read: &In, value: &Value) -> Option<Position> {
-    if let Node::Map(_) = value.node() {
-        let map = value.map()?;
-        let name = map.required("name").and_then(|v| v.text().map(str::to_owned));
-        let crest_m = read.optional(&map, "crest", Dimension::Length);
-        let opening = read.optional(&map, "open", Dimension::Percent).map_or(1.0, |p| p / 100.0);
-        map.finish();
-        return Some(Position { name: name?, opening, crest_m });
-    }
-    let percent = read.quantity(value, Dimension::Percent)?;
-    Some(Position { name: format!("{percent}"), opening: percent / 100.0, crest_m: None })
 }
 
 fn now(read: &In, map: &Map) -> Vec<(String, SetNow)> {

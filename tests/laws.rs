@@ -1,0 +1,20 @@
+//! Laws that hold whatever the water: limits, symmetry, conservation, continuity.
+
+#![allow(
+    clippy::unwrap_used,
+    clippy::float_cmp,
+    reason = "a test stops at its first surprise; some laws are exact"
+)]
+
+#[path = "laws/columns.rs"]
+mod columns;
+#[path = "laws/continuity.rs"]
+mod continuity;
+#[path = "laws/crest.rs"]
+mod crest;
+#[path = "laws/levelling.rs"]
+mod levelling;
+#[path = "laws/shape.rs"]
+mod shape;
+#[path = "laws/withdrawal.rs"]
+mod withdrawal;
