@@ -89,7 +89,7 @@ fn scenario_every_example_of_the_files_reference_is_accepted() {
             fs::write(folder.path().join("profiles").join(name), text).unwrap();
         }
         let named = folder.path().to_str().unwrap();
-        let found = check(named);
+        let (found, _) = check(named);
         assert!(!any_refused(&found), "{:#?}", said(&found));
         let folder = Folder::open(named).unwrap();
         assert_eq!(folder.casts().len(), casts.len());
