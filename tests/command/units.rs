@@ -1,5 +1,7 @@
 //! One site in metres and in feet: the same river.
 
+use std::fmt::Write;
+
 use serde_json::Value;
 
 use crate::{CAST, Folder, SITE, run, with};
@@ -80,7 +82,7 @@ cold_water: [{preferred}]
         format!("# taken: 2025-07-14T10:30\n# pool: {}\ndepth_ft,temperature_F,oxygen_mg_l\n", feet(POOL_M));
     for line in CAST.lines().skip(3) {
         let cells: Vec<f64> = line.split(',').map(|cell| cell.parse().unwrap()).collect();
-        cast.push_str(&format!("{},{},{}\n", feet(cells[0]), fahrenheit(cells[1]), cells[2]));
+        writeln!(cast, "{},{},{}", feet(cells[0]), fahrenheit(cells[1]), cells[2]).unwrap();
     }
     Folder::new(&site, &[("2025-07-14.csv", cast.as_bytes())])
 }
