@@ -54,6 +54,21 @@ pub struct Folder {
     source: Source,
 }
 
+/// Why a site cannot be opened, and the units its user reads.
+#[derive(Debug, Clone)]
+pub struct Refused {
+    /// Every problem of the site file.
+    pub problems: Vec<Problem>,
+    /// The units of its user, as far as they are known.
+    pub system: System,
+}
+
+impl From<Problem> for Refused {
+    fn from(problem: Problem) -> Self {
+        Self { problems: vec![problem], system: System::default() }
+    }
+}
+
 /// A cast read against the site, with its bytes.
 #[derive(Debug, Clone)]
 pub struct Read {
@@ -80,7 +95,7 @@ impl Folder {
     ///
     /// # Errors
     /// Every problem of the site file, with lines.
-    pub fn open(named: &str) -> Result<Self, Vec<Problem>> {
+    pub fn open(named: &str) -> Result<Self, Refused> {
         let path = Path::new(named);
         if !path.exists() && demonstrations().contains(&named) {
             return Self::demonstration(named);
@@ -91,40 +106,37 @@ impl Folder {
             (path.parent().map(Path::to_owned).unwrap_or_default(), path.to_owned())
         };
         if path.is_dir() && !file.exists() {
-            return Err(vec![
-                Problem::refused(
-                    "no-site",
-                    "the folder has no site.yaml",
-                    "name a site folder, or write the demonstration sites with `gatemix demo`",
-                )
-                .in_file(named),
-            ]);
+            let cure = "name a site folder, or write the demonstration sites with `gatemix demo`";
+            return Err(Problem::refused("no-site", "the folder has no site.yaml", cure)
+                .in_file(named)
+                .into());
         }
-        Self::from_source(Root::Disk(root), text::read(&file, Format::Yaml).map_err(|p| vec![p])?)
+        Self::from_source(Root::Disk(root), text::read(&file, Format::Yaml)?)
     }
 
     /// Opens a demonstration site from inside the binary.
     ///
     /// # Errors
     /// Its problems; there are none in a released binary, which a test holds.
-    pub fn demonstration(name: &str) -> Result<Self, Vec<Problem>> {
+    pub fn demonstration(name: &str) -> Result<Self, Refused> {
         let file = format!("{name}/site.yaml");
         let source = inside(&file).ok_or_else(|| {
-            vec![Problem::refused(
+            Problem::refused(
                 "no-demonstration",
                 format!("no demonstration site is named `{name}`"),
                 format!("there are: {}", demonstrations().join(", ")),
-            )]
+            )
         })?;
-        Self::from_source(Root::Inside(name.to_owned()), source.map_err(|p| vec![p])?)
+        Self::from_source(Root::Inside(name.to_owned()), source?)
     }
 
-    fn from_source(root: Root, source: Source) -> Result<Self, Vec<Problem>> {
-        let (site, mut notes) = super::site::site(&source.text, &source.name);
+    fn from_source(root: Root, source: Source) -> Result<Self, Refused> {
+        let read = super::site::site(&source.text, &source.name);
+        let mut notes = read.problems;
         notes.extend(source.note());
-        match site {
+        match read.site {
             Some(site) => Ok(Self { root, site, notes, source }),
-            None => Err(notes),
+            None => Err(Refused { problems: notes, system: read.system }),
         }
     }
 
@@ -342,7 +354,7 @@ fn inside(file: &str) -> Option<Result<Source, Problem>> {
 /// Every problem of a site folder: the site file, then each cast; and the units its user reads.
 pub fn check(named: &str) -> (Vec<Problem>, System) {
     match Folder::open(named) {
-        Err(problems) => (problems, System::default()),
+        Err(refused) => (refused.problems, refused.system),
         Ok(folder) => {
             let mut problems = folder.notes.clone();
             let casts = folder.casts();

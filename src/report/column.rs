@@ -4,8 +4,8 @@
 //! ```text
 //!   ft    outlets        zones   temperature * 40 to 75 F, oxygen o 4 to 9 mg/L
 //!  1,470 |              | .    |                  o                     *    |
-//!  1,455 |   W1 E1      | +    |               o                     *       |
-//!  1,395 | > W3 E3      | #    |       *    o                                |
+//!  1,455 |   N1 S1      | +    |               o                     *       |
+//!  1,395 | >N3 >S3      | #    |       *    o                                |
 //! ```
 
 use std::fmt::Write as _;

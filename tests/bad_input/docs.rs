@@ -121,7 +121,7 @@ fn known_keys() -> BTreeMap<String, bool> {
     let mut levels = vec![String::new()];
     while let Some(level) = levels.pop() {
         let here = level.replace("[]", "[0]");
-        let (_, problems) = site(&probe(&level), "site.yaml");
+        let problems = site(&probe(&level), "site.yaml").problems;
         let at = |kind: &str, key: &str| {
             let path = below(&here, key);
             problems.iter().find(move |p| p.kind == kind && p.place.path.as_deref() == Some(path.as_str()))
@@ -219,8 +219,8 @@ targets: [ { name: t, high: 14 } ]
 #[test]
 fn law_the_defaults_of_the_files_reference_are_those_of_the_reader() {
     let read = |document: &Value| {
-        let (read, problems) = site(&serde_yaml::to_string(document).unwrap(), "site.yaml");
-        read.unwrap_or_else(|| panic!("{:#?}", said(&problems)))
+        let read = site(&serde_yaml::to_string(document).unwrap(), "site.yaml");
+        read.site.unwrap_or_else(|| panic!("{:#?}", said(&read.problems)))
     };
     let bare: Value = serde_yaml::from_str(BARE).unwrap();
     let mut spelled = bare.clone();

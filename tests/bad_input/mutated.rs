@@ -3,7 +3,7 @@
 
 use chrono::NaiveDate;
 use gatemix::files::cast::{Told, cast};
-use gatemix::files::site::site;
+use gatemix::files::site::{Read, site};
 use gatemix::files::text::{Format, read_from};
 use gatemix::intake::{capacity_m3s, is_wet};
 use gatemix::mix::{Gate, Perturbed, Setting, judge, refusals};
@@ -126,7 +126,7 @@ fn said_well(problems: &[Problem]) -> Result<(), TestCaseError> {
 /// Reads both, and answers as far as an answer goes.
 fn answer(site_bytes: &[u8], cast_bytes: &[u8], share: f64) -> Result<bool, TestCaseError> {
     let Ok(text) = read_from("site.yaml", site_bytes, Format::Yaml) else { return Ok(false) };
-    let (site, problems) = site(&text.text, "site.yaml");
+    let Read { site, problems, .. } = site(&text.text, "site.yaml");
     said_well(&problems)?;
     prop_assert_eq!(site.is_none(), any_refused(&problems));
     let Some(mut site) = site else { return Ok(false) };

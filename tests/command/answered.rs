@@ -135,7 +135,7 @@ fn unchanged_the_same_question_has_the_same_bytes() {
         &["pool", folder.named(), "--json"],
         &["mix", folder.named(), "--json"],
         &["check", folder.named()],
-        &["mix", "ashlar", "--set", "W1=500", "--set", "E4=300cfs", "--units", "si"],
+        &["mix", "ashlar", "--set", "N1=500", "--set", "S4=300cfs", "--units", "si"],
     ] {
         let first = run(arguments);
         assert_eq!(first.code, Some(0), "{}", first.err);

@@ -6,22 +6,36 @@ use chrono::{Offset, Utc};
 
 use crate::problem::{Problem, any_refused};
 use crate::site::{ListedCast, Raw, RawPool, RawRow, RawTarget, SetNow, Site, WidthSource};
-use crate::units::{Dimension, Folder};
+use crate::units::{Dimension, Folder, System};
 
 use crate::files::cast::{Column, TIME_CURE, parse_time};
 use crate::files::cursor::{Map, Scalar, Value, Walk};
 use crate::files::yaml::{Document, Node};
 
+/// What a site file gave.
+#[derive(Debug, Clone)]
+pub struct Read {
+    /// The site; `None` when any problem refuses it.
+    pub site: Option<Site>,
+    /// Every problem, flag and note with file and line.
+    pub problems: Vec<Problem>,
+    /// The units its user reads, known even where the site is refused.
+    pub system: System,
+}
+
 /// Reads and checks the text of a site file. The list holds every problem, flag and note with file and line;
 /// the site is `None` when any refuses.
-pub fn site(text: &str, file: &str) -> (Option<Site>, Vec<Problem>) {
+pub fn site(text: &str, file: &str) -> Read {
     let document = match Document::parse(text) {
         Ok(document) => document,
-        Err(problem) => return (None, vec![problem.in_file(file)]),
+        Err(problem) => {
+            return Read { site: None, problems: vec![problem.in_file(file)], system: System::default() };
+        }
     };
     let walk = Walk::new(&document);
     let raw = walk.root().map().map(raw_site);
     let mut problems = walk.problems(file);
+    let system = raw.as_ref().map_or_else(System::default, |raw| raw.units.system());
     let checked = raw.and_then(|raw| {
         let (site, mut found) = Site::check(&raw);
         document.locate(&mut found, file);
@@ -30,7 +44,7 @@ pub fn site(text: &str, file: &str) -> (Option<Site>, Vec<Problem>) {
     });
     let site = if any_refused(&problems) { None } else { checked };
     problems.sort_by_key(|p| p.place.line.unwrap_or(0));
-    (site, problems)
+    Read { site, problems, system }
 }
 
 /// The folder's units and the quantities read in them.
