@@ -158,3 +158,9 @@ pub fn given() -> impl Strategy<Value = (Pool, Vec<f64>)> {
         },
     )
 }
+
+/// How nearly a flow relation can be met, as a share of the flow: a millionth; some round-off of a density of
+/// 1000 kg/m3 beside the difference across the zone; and what a hundred-millionth of a metre changes.
+pub fn slack(difference_kg_m3: f64, change_m3s: f64, flow_m3s: f64) -> f64 {
+    1e-6 + 3e-12 / difference_kg_m3 + (change_m3s / flow_m3s).abs()
+}
