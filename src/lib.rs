@@ -1,9 +1,16 @@
 //! gatemix: which gates, how far open, so that the river below a dam gets the water it needs.
 
+pub mod cli;
+pub mod files;
+pub mod intake;
+pub mod mix;
+pub mod plot;
 pub mod problem;
 pub mod profile;
+pub mod report;
 pub mod site;
 pub mod target;
+pub mod tasks;
 pub mod units;
 pub mod water;
 pub mod withdrawal;

@@ -1,2 +1,7 @@
 //! The gatemix command.
-fn main() {}
+
+use std::process::ExitCode;
+
+fn main() -> ExitCode {
+    gatemix::cli::run(std::env::args_os())
+}

@@ -4,6 +4,9 @@
 //! [`Weight::Refused`] in the same list, so the two can never part.
 
 use std::fmt;
+use std::fmt::Write as _;
+
+use crate::units::{System, in_system};
 
 /// How much a problem weighs.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
@@ -48,9 +51,9 @@ pub struct Problem {
     pub kind: &'static str,
     /// Where it stands.
     pub place: Place,
-    /// What is wrong, in words.
+    /// What is wrong, in words; quantities as [`say`](crate::units::say) marks them.
     pub words: String,
-    /// What to do about it; empty where nothing needs doing.
+    /// What to do about it, in the same manner; empty where nothing needs doing.
     pub cure: String,
 }
 
@@ -94,30 +97,43 @@ impl Problem {
         self.place.file = Some(file.into());
         self
     }
+
+    /// `site.yaml:12: refused: outlets[3].width: words; cure`, quantities in the reader's units, made
+    /// harmless for a terminal.
+    pub fn text(&self, system: System) -> String {
+        let mut out = String::new();
+        match (&self.place.file, self.place.line) {
+            (Some(file), Some(line)) => _ = write!(out, "{}:{line}: ", harmless(file)),
+            (Some(file), None) => _ = write!(out, "{}: ", harmless(file)),
+            (None, Some(line)) => _ = write!(out, "line {line}: "),
+            (None, None) => {}
+        }
+        _ = write!(out, "{}: ", self.weight.word());
+        if let Some(path) = self.place.path.as_deref().filter(|p| !p.is_empty()) {
+            _ = write!(out, "{}: ", harmless(path));
+        }
+        out.push_str(&self.sentence(system));
+        if !self.cure.is_empty() {
+            _ = write!(out, "; {}", shown(&self.cure, system));
+        }
+        out
+    }
+
+    /// The words alone, quantities in the reader's units, made harmless for a terminal.
+    pub fn sentence(&self, system: System) -> String {
+        shown(&self.words, system)
+    }
 }
 
-/// `site.yaml:12: refused: outlets[3].width: words; cure`, made harmless for a terminal.
+/// The line in SI.
 impl fmt::Display for Problem {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        if let Some(file) = &self.place.file {
-            write!(f, "{}:", harmless(file))?;
-            if let Some(line) = self.place.line {
-                write!(f, "{line}:")?;
-            }
-            f.write_str(" ")?;
-        } else if let Some(line) = self.place.line {
-            write!(f, "line {line}: ")?;
-        }
-        write!(f, "{}: ", self.weight.word())?;
-        if let Some(path) = self.place.path.as_deref().filter(|p| !p.is_empty()) {
-            write!(f, "{}: ", harmless(path))?;
-        }
-        f.write_str(&harmless(&self.words))?;
-        if !self.cure.is_empty() {
-            write!(f, "; {}", harmless(&self.cure))?;
-        }
-        Ok(())
+        f.write_str(&self.text(System::Si))
     }
+}
+
+fn shown(text: &str, system: System) -> String {
+    harmless(&in_system(text, system))
 }
 
 /// Whether any problem of the list stops the answer.
@@ -138,4 +154,39 @@ pub fn harmless(text: &str) -> String {
         }
     }
     out
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::units::say;
+    use proptest::prelude::*;
+
+    #[test]
+    fn scenario_only_words_and_cure_hold_quantities() {
+        let mark = say::m(1.0, 1);
+        let problem = Problem::flag("k", format!("{mark} of it"), format!("use {mark}"))
+            .in_file(format!("a{mark}.yaml"))
+            .at(format!("now.{mark}"));
+        assert_eq!(
+            problem.text(System::Us),
+            "a\\u{2}L1=1e0\\u{3}.yaml: flag: now.\\u{2}L1=1e0\\u{3}: 3 ft of it; use 3 ft"
+        );
+        assert_eq!(Problem::note("k", "words").on_line(3).text(System::Si), "line 3: note: words");
+    }
+
+    proptest! {
+        #[test]
+        fn law_no_control_character_reaches_the_reader(
+            pieces in proptest::collection::vec("[\u{2}\u{3}\u{1b}\n\u{9b}LT29=+e.é]{0,6}", 4)
+        ) {
+            let problem = Problem::refused("k", format!("{}{}", pieces[0], say::c(8.0, 1)), pieces[1].clone())
+                .in_file(pieces[2].clone())
+                .at(pieces[3].clone());
+            for (system, end) in [(System::Si, "8.0 C"), (System::Us, "46.4 F")] {
+                prop_assert!(!problem.text(system).chars().any(char::is_control));
+                prop_assert!(problem.sentence(system).ends_with(end));
+            }
+        }
+    }
 }

@@ -1,8 +1,11 @@
 //! Targets: rules the user enters, valid over a span of dates, and how a release stands against them.
+//!
+//! Methods: `docs/methods.md`, section 7.
 
 use chrono::{Datelike, NaiveDate};
 
 use crate::problem::Problem;
+use crate::units::say;
 
 /// A day of the year, month and day.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
@@ -143,12 +146,12 @@ pub struct Target {
 }
 
 impl Target {
-    /// Lower end less the buffer, C.
+    /// Lower end of the range the buffer leaves, C.
     pub fn low_kept_c(&self) -> Option<f64> {
         self.low_c.map(|t| t + self.buffer_c)
     }
 
-    /// Upper end less the buffer, C.
+    /// Upper end of the range the buffer leaves, C.
     pub fn high_kept_c(&self) -> Option<f64> {
         self.high_c.map(|t| t - self.buffer_c)
     }
@@ -196,8 +199,8 @@ impl Target {
         {
             refuse(
                 "low",
-                format!("low lies above high (buffer of {:.2} C counted on both sides)", self.buffer_c),
-                "swap them, or lessen the buffer",
+                format!("low {} is above high {}, the buffer counted in", say::c(low, 2), say::c(high, 2)),
+                "swap low and high, or make the buffer smaller",
             );
         }
         if let Some(preferred) = self.preferred_c {
@@ -206,20 +209,20 @@ impl Target {
             if out_of {
                 refuse(
                     "preferred",
-                    "preferred temperature lies outside low and high".into(),
-                    "move it into the range",
+                    format!("preferred {} lies outside low to high", say::c(preferred, 2)),
+                    "move it between low and high",
                 );
             }
         }
         if self.buffer_c < 0.0 {
-            refuse("buffer", "buffer is negative".into(), "give 0 or more");
+            refuse(
+                "buffer",
+                format!("the buffer {} is negative", say::dc(self.buffer_c, 2)),
+                "give 0 or more",
+            );
         }
         if self.low_c.is_none() && self.high_c.is_none() && self.oxygen_min_mg_l.is_none() {
-            refuse(
-                "name",
-                "the target sets neither low, high nor oxygen_min".into(),
-                "give at least one bound",
-            );
+            refuse("name", "the target sets no bound".into(), "give at least one of low, high, oxygen_min");
         }
         out
     }

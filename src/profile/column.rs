@@ -2,6 +2,8 @@
 //! computed from them where it is asked for, and levelled so that it never falls with depth.
 //!
 //! Everything that needs a limit or a shape asks the column; what is blended is taken from it as measured.
+//!
+//! Methods: `docs/methods.md`, section 2.
 
 use super::levelled::levelled;
 use super::samples::{

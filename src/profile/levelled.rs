@@ -1,4 +1,6 @@
 //! Levelling: the density that never falls with depth and is nearest to the measured one.
+//!
+//! Methods: `docs/methods.md`, section 2.
 
 /// Pools neighbouring nodes that stand the wrong way round into their thickness-weighted mean until density
 /// never rises upward (pool adjacent violators). `nodes_m` rise; returns the levelled density of each node,

@@ -1,4 +1,6 @@
 //! What was sampled, and values between samples: linear, held beyond the ends.
+//!
+//! Methods: `docs/methods.md`, section 2.
 
 use crate::water;
 

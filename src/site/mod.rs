@@ -13,7 +13,6 @@ use chrono::FixedOffset;
 use crate::target::Target;
 use crate::units::{Datum, Folder};
 
-pub use check::CONDUIT_SLACK_M;
 pub use outlet::{Kind, Leakage, OpenPart, Opens, Outlet, Position, Shape};
 pub use pool::{Pool, RawRow, WidthSource};
 pub use raw::{Raw, RawOutlet, RawPool, RawTarget, RawWell};
@@ -106,7 +105,7 @@ impl Default for CastChecks {
             extrapolate_m: 5.0,
             spike_c: 1.0,
             spike_mg_l: 2.0,
-            oxygen_share: 1.1,
+            oxygen_share: 1.25,
             ageing_days: 7.0,
             stale_days: 14.0,
             heat_w_m2: 400.0,
@@ -220,5 +219,10 @@ impl Site {
     /// Index of an outlet by name.
     pub fn outlet(&self, name: &str) -> Option<usize> {
         self.outlets.iter().position(|o| o.name == name)
+    }
+
+    /// Air pressure at the water surface, atm; at sea level where the altitude is not known.
+    pub fn surface_pressure_atm(&self, pool_m: f64) -> f64 {
+        self.place.altitude_m.map_or(1.0, |altitude| crate::water::pressure_atm(altitude + pool_m))
     }
 }

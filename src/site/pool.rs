@@ -1,6 +1,9 @@
 //! The pool table: elevation, area, volume and width, and its look-ups.
+//!
+//! Methods: `docs/methods.md`, section 2.
 
 use crate::problem::Problem;
+use crate::units::say;
 
 /// One row of the table as read, SI.
 #[derive(Debug, Clone, Copy, Default, PartialEq)]
@@ -77,10 +80,11 @@ impl Pool {
                     path.clone(),
                     "table-order",
                     format!(
-                        "elevation {:.2} m does not rise above {:.2} m of the row before",
-                        pair[1].elevation_m, pair[0].elevation_m
+                        "elevation {} is not above {} of the row before",
+                        say::m(pair[1].elevation_m, 2),
+                        say::m(pair[0].elevation_m, 2)
                     ),
-                    "order the rows from the bed upward, each elevation once",
+                    "list the rows from the bed upward, each elevation once",
                 );
             }
             if pair[1].area_m2 < pair[0].area_m2 {
@@ -88,10 +92,11 @@ impl Pool {
                     path.clone(),
                     "table-order",
                     format!(
-                        "area {:.0} m2 is smaller than {:.0} m2 of the row below it",
-                        pair[1].area_m2, pair[0].area_m2
+                        "area {} is smaller than {} of the row before",
+                        say::m2(pair[1].area_m2, 0),
+                        say::m2(pair[0].area_m2, 0)
                     ),
-                    "areas must not shrink upward; look for swapped columns or rows",
+                    "area cannot shrink as the pool rises; look for swapped columns or rows",
                 );
             }
             if let (Some(low), Some(high)) = (pair[0].volume_m3, pair[1].volume_m3)
@@ -100,8 +105,8 @@ impl Pool {
                 refuse(
                     path,
                     "table-order",
-                    format!("volume {high:.0} m3 does not rise above {low:.0} m3 of the row before"),
-                    "volumes must rise with elevation",
+                    format!("volume {} is not above {} of the row before", say::m3(high, 0), say::m3(low, 0)),
+                    "volume must rise with elevation; look for swapped columns or rows",
                 );
             }
         }
@@ -113,7 +118,7 @@ impl Pool {
                 refuse(
                     format!("pool.table[{i}]"),
                     "negative",
-                    "area, volume and width cannot be negative".into(),
+                    "area, volume or width is negative".into(),
                     "correct the row",
                 );
             }
@@ -140,8 +145,8 @@ impl Pool {
             refuse(
                 "pool.full".into(),
                 "pool-order",
-                format!("full pool {full_m:.2} m does not lie above the bed {bed_m:.2} m"),
-                "check `bed` and `full`",
+                format!("full pool {} is not above the bed {}", say::m(full_m, 2), say::m(bed_m, 2)),
+                "correct `bed` or `full`",
             );
         }
         if let (Some(first), Some(last)) = (table.first(), table.last()) {
@@ -149,16 +154,24 @@ impl Pool {
                 refuse(
                     "pool.table[0]".into(),
                     "table-span",
-                    format!("the table begins at {:.2} m, above the bed {bed_m:.2} m", first.elevation_m),
-                    "let the first row stand at the bed (its area and volume may be 0)",
+                    format!(
+                        "the table begins at {}, above the bed {}",
+                        say::m(first.elevation_m, 2),
+                        say::m(bed_m, 2)
+                    ),
+                    "add a first row at the bed; its area and volume may be 0",
                 );
             }
             if last.elevation_m < full_m - 1e-9 {
                 refuse(
                     format!("pool.table[{}]", table.len() - 1),
                     "table-span",
-                    format!("the table ends at {:.2} m, below full pool {full_m:.2} m", last.elevation_m),
-                    "carry the table up to full pool or above",
+                    format!(
+                        "the table ends at {}, below full pool {}",
+                        say::m(last.elevation_m, 2),
+                        say::m(full_m, 2)
+                    ),
+                    "add rows up to full pool or above",
                 );
             }
         }
@@ -177,8 +190,8 @@ impl Pool {
                         problems.push(
                             Problem::refused(
                                 "volume-without-area",
-                                format!("a volume of {told:.0} m3 stands over an area of zero"),
-                                "give the areas that hold this volume",
+                                format!("the row adds {} of water over an area of zero", say::m3(told, 0)),
+                                "give the areas of this stretch",
                             )
                             .at(format!("pool.table[{i}]")),
                         );
@@ -189,13 +202,15 @@ impl Pool {
                             Problem::flag(
                                 "volume-area",
                                 format!(
-                                    "between {:.2} and {:.2} m the volumes differ by {told:.4e} m3 and the areas \
-                                     integrate to {step:.4e} m3 ({:+.1} %); the volumes rule",
-                                    previous.elevation_m,
-                                    raw.elevation_m,
+                                    "between {} and {} the volume column holds {} and the areas {} ({:+.1} %); \
+                                     the volume column is used",
+                                    say::m(previous.elevation_m, 2),
+                                    say::m(raw.elevation_m, 2),
+                                    say::m3(told, 0),
+                                    say::m3(step, 0),
                                     100.0 * (step / told - 1.0)
                                 ),
-                                "compare this stretch of the table with its survey",
+                                "check both columns here against the survey",
                             )
                             .at(format!("pool.table[{i}]")),
                         );
@@ -213,8 +228,8 @@ impl Pool {
             problems.push(
                 Problem::refused(
                     "table-empty",
-                    "the pool table holds no area above its first row",
-                    "give areas",
+                    "a row above the first has no area",
+                    "give the area of every row above the bed",
                 )
                 .at("pool.table"),
             );
@@ -226,6 +241,11 @@ impl Pool {
     /// Highest elevation of the table, m.
     pub fn top_m(&self) -> f64 {
         self.rows.last().map_or(self.full_m, |r| r.elevation_m)
+    }
+
+    /// Bed to top, as a sentence gives it.
+    pub(crate) fn extent(&self) -> String {
+        format!("{} to {}", say::m(self.bed_m, 2), say::m(self.top_m(), 2))
     }
 
     /// Elevations at which the table has a row, rising, m.
@@ -313,4 +333,49 @@ impl Pool {
 fn linear_share_inverse(a: f64, b: f64, part: f64) -> f64 {
     let root = (a * a + 2.0 * (b - a) * part).max(0.0).sqrt();
     if a + root > 0.0 { (2.0 * part / (a + root)).clamp(0.0, 1.0) } else { 0.0 }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::units::{Dimension, Folder, System};
+
+    #[test]
+    fn scenario_a_customary_site_is_answered_in_feet() {
+        let mut units = Folder::default();
+        units.set(Dimension::Length, "ft").unwrap();
+        let ft = |value| units.to_si(value, Dimension::Length);
+        let row = |elevation_m, area_m2| RawRow { elevation_m, area_m2, ..RawRow::default() };
+        let table = [row(ft(1000.0), 0.0), row(ft(1190.5), 9.0e6)];
+        let mut found = Vec::new();
+        assert_eq!(Pool::check(ft(1000.0), ft(1200.0), &table, WidthSource::Table, &mut found), None);
+        let [problem] = found.as_slice() else { panic!("{found:?}") };
+        assert_eq!(
+            problem.text(System::Us),
+            "refused: pool.table[1]: the table ends at 1,190.5 ft, below full pool 1,200.0 ft; \
+             add rows up to full pool or above"
+        );
+        assert_eq!(problem.sentence(System::Si), "the table ends at 362.86 m, below full pool 365.76 m");
+    }
+
+    #[test]
+    fn scenario_a_table_at_odds_with_its_areas_says_both_volumes() {
+        let row = |elevation_m, area_m2, volume_m3| RawRow {
+            elevation_m,
+            area_m2,
+            volume_m3: Some(volume_m3),
+            width_m: None,
+        };
+        let table = [row(0.0, 2.0e6, 0.0), row(10.0, 2.0e6, 2.5e7)];
+        let mut found = Vec::new();
+        assert!(Pool::check(0.0, 10.0, &table, WidthSource::Table, &mut found).is_some());
+        let said: Vec<String> = found.iter().map(|p| p.sentence(System::Us)).collect();
+        assert_eq!(
+            said,
+            [
+                "between 0.0 ft and 32.8 ft the volume column holds 20,268 acre-ft and the areas 16,214 acre-ft \
+              (-20.0 %); the volume column is used"
+            ]
+        );
+    }
 }

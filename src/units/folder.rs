@@ -1,6 +1,7 @@
 //! The units in which the bare numbers of a site's folder are written.
 
 use super::parse::{UnitError, parse};
+use super::show::System;
 use super::unit::{Dimension, Unit};
 
 /// The units of a folder's bare numbers; m, m2, m3, m3/s and C unless set otherwise.
@@ -44,6 +45,11 @@ impl Folder {
             Dimension::Concentration | Dimension::Percent => {}
         }
         Ok(())
+    }
+
+    /// The units in which a user of this folder reads: customary where lengths are in feet.
+    pub fn system(&self) -> System {
+        if self.length == Unit::Foot { System::Us } else { System::Si }
     }
 
     /// The unit of a bare number.

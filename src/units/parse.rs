@@ -10,7 +10,7 @@ const QUOTED: usize = 40;
 #[derive(Debug, Clone, PartialEq, Eq, thiserror::Error)]
 pub enum UnitError {
     /// No number where one was expected.
-    #[error("{text:?} is not a number; write a {dimension} as a plain number, or with {} after it", dimension.accepted())]
+    #[error("{text:?} is not a number; write the {dimension} as a plain number, or with {} after it", dimension.accepted())]
     NotANumber {
         /// The text.
         text: String,
@@ -24,7 +24,7 @@ pub enum UnitError {
         text: String,
     },
     /// Beyond what a number can hold.
-    #[error("{text:?} is too large; a {dimension} is a finite number in {}", dimension.accepted())]
+    #[error("{text:?} is too large; the {dimension} must be finite, in {}", dimension.accepted())]
     NotFinite {
         /// The text.
         text: String,

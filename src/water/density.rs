@@ -2,12 +2,14 @@
 //!
 //! Density in place must never be differenced over depth: compression alone adds about 0.9 kg/m3 in 200 m
 //! and would pass for stratification. Hence no pressure term here.
+//!
+//! Methods: `docs/methods.md`, section 1.
 
 /// Density of the grains of suspended sediment unless the site says otherwise, kg/m3 (that of quartz; choice).
 pub const SEDIMENT_DENSITY_KG_M3: f64 = 2650.0;
 
-/// Tanaka et al. 2001, Metrologia 38:301-309, the CIPM formula (standard), 0-40 C, uncertainty below
-/// 0.001 kg/m3 for clean water at 1 atm.
+/// Tanaka et al. 2001, Metrologia 38:301-309, the CIPM formula (standard), 0-40 C; there within
+/// 0.0012 kg/m3 of IAPWS-95.
 const A1: f64 = -3.983035;
 const A2: f64 = 301.797;
 const A3: f64 = 522528.9;

@@ -7,6 +7,9 @@ mod oxygen;
 mod solids;
 mod thermal;
 
+#[cfg(test)]
+mod tests;
+
 pub use density::{
     SEDIMENT_DENSITY_KG_M3, density_kg_m3, pure_water_kg_m3, salt_slope, suspended_gain_kg_m3,
     temperature_of_greatest_density_c,

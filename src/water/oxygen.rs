@@ -1,7 +1,10 @@
 //! Dissolved oxygen at saturation, and percent of it.
 //!
 //! Measured oxygen above saturation is real water; nothing here clamps it.
+//!
+//! Methods: `docs/methods.md`, section 1.
 
+/// Kelvin at 0 C (standard; exact by definition).
 const KELVIN: f64 = 273.15;
 
 /// Air pressure of the standard atmosphere.

@@ -1,4 +1,6 @@
 //! Dissolved solids, measured or from electrical conductance.
+//!
+//! Methods: `docs/methods.md`, section 1.
 
 use super::density::pure_water_kg_m3;
 

@@ -1,7 +1,9 @@
 //! Heat of water: specific heat, latent heat, viscosity; and the fixed pair that heat content is kept in.
+//!
+//! Methods: `docs/methods.md`, section 1.
 
 /// Density with which heat content is kept, kg/m3 (choice: water of 15 C). It and [`CP_REF_J_KG_K`] are
-/// fixed so that mixing conserves heat exactly; their product is within 0.9 % of the true one at 0-40 C.
+/// fixed so that mixing conserves heat exactly; their product is within 1 % of the true one at 0-40 C.
 pub const RHO_REF_KG_M3: f64 = 999.1;
 
 /// Specific heat with which heat content is kept, J/(kg K) (choice: water of 15 C).

@@ -1,4 +1,6 @@
 //! Water over an edge: spillways, shutters, stacked leaves.
+//!
+//! Methods: `docs/methods.md`, section 3.
 
 use std::f64::consts::PI;
 

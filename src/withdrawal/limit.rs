@@ -1,4 +1,6 @@
 //! The relations behind a limit: the free limit, the boundary factor, and the root that meets a flow.
+//!
+//! Methods: `docs/methods.md`, section 3.
 
 use std::f64::consts::PI;
 

@@ -1,4 +1,6 @@
 //! The velocity across a zone and the water it blends.
+//!
+//! Methods: `docs/methods.md`, section 3.
 
 use std::ops::Range;
 

@@ -1,4 +1,6 @@
 //! Both limits of a port, and where its velocity peaks.
+//!
+//! Methods: `docs/methods.md`, section 3.
 
 use std::f64::consts::FRAC_PI_2;
 

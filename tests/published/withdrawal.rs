@@ -71,12 +71,13 @@ fn port(centre_m: f64, flow_m3s: f64, angle_rad: f64) -> Sink {
     Sink { centre_m, flow_m3s, opening: Opening::Port { angle_rad } }
 }
 
+/// Centre, flow, angle/pi; lower, upper, peak; temperature, oxygen; Q_b up and down.
+type Row = ([f64; 3], [f64; 3], [f64; 2], [f64; 2]);
+
 /// Full digits of the independent calculation kept under `tests/peer`, run with numpy 2.4.6 and scipy 1.17.1.
 #[test]
 fn published_worked_cases() {
     let column = worked();
-    // centre, flow, angle/pi; lower, upper, peak; T, DO; Q_b up, down as printed
-    type Row = ([f64; 3], [f64; 3], [f64; 2], [f64; 2]);
     let rows: [Row; 5] = [
         (
             [45.0, 30.0, 1.0],

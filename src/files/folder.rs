@@ -1,0 +1,368 @@
+//! A site folder, on disk or inside the binary: its site file, its casts, the fingerprint of what was read.
+
+use std::path::{Path, PathBuf};
+
+use chrono::{DateTime, FixedOffset};
+use include_dir::{Dir, include_dir};
+use sha2::{Digest, Sha256};
+
+use crate::problem::Problem;
+use crate::profile::{Profile, Raw};
+use crate::site::Site;
+use crate::units::System;
+
+use super::cast::{Told, cast};
+use super::text::{self, Format, Source};
+use super::yaml::Document;
+
+static DEMONSTRATIONS: Dir<'static> = include_dir!("$CARGO_MANIFEST_DIR/sites");
+
+/// The demonstration sites that travel inside the binary, by name; the first one opens when nothing is named.
+pub fn demonstrations() -> Vec<&'static str> {
+    let mut names: Vec<&str> = DEMONSTRATIONS.dirs().filter_map(|d| d.path().file_name()?.to_str()).collect();
+    names.sort_unstable();
+    names
+}
+
+/// Every file of the demonstration sites, path below the sites folder and bytes, in order.
+pub fn demonstration_files() -> Vec<(PathBuf, &'static [u8])> {
+    fn gather(dir: &Dir<'static>, out: &mut Vec<(PathBuf, &'static [u8])>) {
+        out.extend(dir.files().map(|f| (f.path().to_owned(), f.contents())));
+        dir.dirs().for_each(|d| gather(d, out));
+    }
+    let mut out = Vec::new();
+    gather(&DEMONSTRATIONS, &mut out);
+    out.sort();
+    out
+}
+
+/// Where a site's files are.
+#[derive(Debug, Clone)]
+enum Root {
+    Disk(PathBuf),
+    Inside(String),
+}
+
+/// An opened site folder: the checked site and everything said while reading it.
+#[derive(Debug, Clone)]
+pub struct Folder {
+    root: Root,
+    /// The checked site.
+    pub site: Site,
+    /// Flags and notes on the site file.
+    pub notes: Vec<Problem>,
+    source: Source,
+}
+
+/// Why a site cannot be opened, and the units its user reads.
+#[derive(Debug, Clone)]
+pub struct Refused {
+    /// Every problem of the site file.
+    pub problems: Vec<Problem>,
+    /// The units of its user, as far as they are known.
+    pub system: System,
+}
+
+impl From<Problem> for Refused {
+    fn from(problem: Problem) -> Self {
+        Self { problems: vec![problem], system: System::default() }
+    }
+}
+
+/// A cast read against the site, with its bytes.
+#[derive(Debug, Clone)]
+pub struct Read {
+    /// The profile, with its flags.
+    pub profile: Profile,
+    /// The bytes it came from, and their name.
+    pub source: Source,
+}
+
+/// One cast of the folder: its file, the raw cast if it could be read, and everything said of it.
+#[derive(Debug, Clone)]
+pub struct Listed {
+    /// File as shown.
+    pub file: String,
+    /// What was read.
+    pub raw: Option<Raw>,
+    /// Problems, flags and notes.
+    pub problems: Vec<Problem>,
+    source: Option<Source>,
+}
+
+impl Folder {
+    /// Opens a site: a folder, its `site.yaml`, or the name of a demonstration site where no such path exists.
+    ///
+    /// # Errors
+    /// Every problem of the site file, with lines.
+    pub fn open(named: &str) -> Result<Self, Refused> {
+        let path = Path::new(named);
+        if !path.exists() && demonstrations().contains(&named) {
+            return Self::demonstration(named);
+        }
+        let (root, file) = if path.is_dir() {
+            (path.to_owned(), path.join("site.yaml"))
+        } else {
+            (path.parent().map(Path::to_owned).unwrap_or_default(), path.to_owned())
+        };
+        if path.is_dir() && !file.exists() {
+            let cure = "name a site folder, or write the demonstration sites with `gatemix demo`";
+            return Err(Problem::refused("no-site", "the folder has no site.yaml", cure)
+                .in_file(named)
+                .into());
+        }
+        Self::from_source(Root::Disk(root), text::read(&file, Format::Yaml)?)
+    }
+
+    /// Opens a demonstration site from inside the binary.
+    ///
+    /// # Errors
+    /// Its problems; there are none in a released binary, which a test holds.
+    pub fn demonstration(name: &str) -> Result<Self, Refused> {
+        let file = format!("{name}/site.yaml");
+        let source = inside(&file).ok_or_else(|| {
+            Problem::refused(
+                "no-demonstration",
+                format!("no demonstration site is named `{name}`"),
+                format!("there are: {}", demonstrations().join(", ")),
+            )
+        })?;
+        Self::from_source(Root::Inside(name.to_owned()), source?)
+    }
+
+    fn from_source(root: Root, source: Source) -> Result<Self, Refused> {
+        let read = super::site::site(&source.text, &source.name);
+        let mut notes = read.problems;
+        notes.extend(source.note());
+        match read.site {
+            Some(site) => Ok(Self { root, site, notes, source }),
+            None => Err(Refused { problems: notes, system: read.system }),
+        }
+    }
+
+    /// Whether the data are held in memory rather than on disk.
+    pub fn in_memory(&self) -> bool {
+        matches!(self.root, Root::Inside(_))
+    }
+
+    /// Reads every cast of the folder, ordered by time and file name; casts without a time come first.
+    pub fn casts(&self) -> Vec<Listed> {
+        let mut casts: Vec<Listed> = self
+            .cast_sources()
+            .into_iter()
+            .map(|(name, source)| match source {
+                Err(problem) => Listed { file: name, raw: None, problems: vec![problem], source: None },
+                Ok(source) => {
+                    let (raw, problems) = cast(&source, &self.site, &self.told(&name));
+                    Listed { file: name, raw, problems, source: Some(source) }
+                }
+            })
+            .collect();
+        casts.sort_by(|a, b| {
+            let taken = |l: &Listed| l.raw.as_ref().and_then(|r| r.taken);
+            taken(a).cmp(&taken(b)).then_with(|| a.file.cmp(&b.file))
+        });
+        casts
+    }
+
+    /// What a folder lacks that its site file counts on: any cast at all, and each cast it lists.
+    fn casts_said(&self, found: &[Listed]) -> Vec<Problem> {
+        let mut out = Vec::new();
+        if found.is_empty() {
+            out.push(Problem::note("no-cast", "there is no cast in `profiles`"));
+        }
+        for (i, listed) in self.site.casts.iter().enumerate() {
+            if !found.iter().any(|f| f.file == listed.file || base(&f.file) == listed.file) {
+                let words = format!("there is no cast `{}` in `profiles`", listed.file);
+                out.push(
+                    Problem::flag("cast-missing", words, "correct the name, or take it out of the list")
+                        .at(format!("casts[{i}].file")),
+                );
+            }
+        }
+        if let Ok(document) = Document::parse(&self.source.text) {
+            document.locate(&mut out, &self.source.name);
+        }
+        out
+    }
+
+    /// When the newest cast of the folder was taken.
+    pub fn newest_time(&self) -> Option<DateTime<FixedOffset>> {
+        self.casts().iter().filter_map(|l| l.raw.as_ref()?.taken).max()
+    }
+
+    /// What the site file says of a cast of that file name.
+    fn told(&self, name: &str) -> Told {
+        let listed = self.site.casts.iter().find(|c| c.file == name || c.file == base(name));
+        listed.map_or_else(Told::default, |c| Told { taken: c.taken.clone(), pool_m: c.pool_m })
+    }
+
+    fn cast_sources(&self) -> Vec<(String, Result<Source, Problem>)> {
+        match &self.root {
+            Root::Inside(name) => demonstration_files()
+                .into_iter()
+                .filter_map(|(path, _)| Some(path.to_str()?.to_owned()))
+                .filter(|path| path.starts_with(&format!("{name}/profiles/")) && is_csv(Path::new(path)))
+                .filter_map(|path| Some((path.clone(), inside(&path)?)))
+                .collect(),
+            Root::Disk(root) => {
+                let Ok(entries) = std::fs::read_dir(root.join("profiles")) else { return Vec::new() };
+                let mut paths: Vec<PathBuf> =
+                    entries.filter_map(|e| Some(e.ok()?.path())).filter(|p| is_csv(p)).collect();
+                paths.sort();
+                paths.into_iter().map(|p| (p.display().to_string(), text::read(&p, Format::Csv))).collect()
+            }
+        }
+    }
+
+    /// The newest cast of the folder. Casts of one time: the last by file name, flagged. Casts that cannot be
+    /// read are flagged and passed over.
+    ///
+    /// # Errors
+    /// Its problems, or that there is none.
+    pub fn newest(&self, pool_m: Option<f64>) -> Result<Read, Vec<Problem>> {
+        let mut casts = self.casts();
+        let mut flags = Vec::new();
+        for broken in casts.iter().filter(|c| c.raw.is_none()) {
+            let first = broken.problems.iter().max_by_key(|p| p.weight);
+            flags.push(
+                Problem::flag(
+                    "cast-unreadable",
+                    first.map_or_else(String::new, |p| {
+                        format!("this cast cannot be read and is passed over: {}", p.words)
+                    }),
+                    "run `gatemix check` on the site",
+                )
+                .in_file(&broken.file),
+            );
+        }
+        casts.retain(|c| c.raw.is_some());
+        let Some(newest) = casts.pop() else {
+            let all_broken = !flags.is_empty();
+            let problem = Problem::refused(
+                "no-cast",
+                if all_broken { "no cast of the site can be read" } else { "the site has no cast" },
+                "put a cast into its `profiles` folder, or give --profile FILE",
+            );
+            return Err(self
+                .casts()
+                .into_iter()
+                .flat_map(|c| c.problems)
+                .filter(|p| p.weight == crate::problem::Weight::Refused)
+                .chain([problem])
+                .collect());
+        };
+        let same = casts.iter().rev().take_while(|c| {
+            c.raw.as_ref().and_then(|r| r.taken) == newest.raw.as_ref().and_then(|r| r.taken)
+        });
+        let same: Vec<&str> = same.map(|c| c.file.as_str()).collect();
+        if !same.is_empty() {
+            flags.push(
+                Problem::flag(
+                    "same-time",
+                    format!("taken at the same time as {}; the last by file name is used", same.join(", ")),
+                    "correct `# taken` of one of them",
+                )
+                .in_file(&newest.file),
+            );
+        }
+        let Some(source) = newest.source else { return Err(newest.problems) };
+        self.held(newest.raw, source, newest.problems, pool_m, flags)
+    }
+
+    /// Reads one cast: a path, a file name in `profiles`, or `-` for standard input.
+    ///
+    /// # Errors
+    /// Every problem of it.
+    pub fn cast(&self, named: &str, taken: Option<&str>, pool_m: Option<f64>) -> Result<Read, Vec<Problem>> {
+        let within = self.cast_sources().into_iter().find(|(name, _)| {
+            Path::new(name).file_name().and_then(|n| n.to_str()) == Some(named) && !Path::new(named).exists()
+        });
+        let source = match within {
+            Some((_, source)) => source,
+            None => text::read(Path::new(named), Format::Csv),
+        }
+        .map_err(|p| vec![p])?;
+        let mut told = self.told(named);
+        if let Some(taken) = taken {
+            told.taken = Some(taken.to_owned());
+        }
+        let (raw, problems) = cast(&source, &self.site, &told);
+        self.held(raw, source, problems, pool_m, Vec::new())
+    }
+
+    /// Holds a raw cast against the site and moves it to the pool asked for.
+    fn held(
+        &self,
+        raw: Option<Raw>,
+        source: Source,
+        mut problems: Vec<Problem>,
+        pool_m: Option<f64>,
+        flags: Vec<Problem>,
+    ) -> Result<Read, Vec<Problem>> {
+        let Some(raw) = raw else { return Err(problems) };
+        let (profile, found) = Profile::build(&raw, &self.site, pool_m);
+        problems.extend(found);
+        let Some(mut profile) = profile else { return Err(problems) };
+        problems.extend(flags);
+        profile.flags = problems;
+        match pool_m.filter(|p| (p - profile.pool_m).abs() > 1e-9) {
+            None => Ok(Read { profile, source }),
+            Some(pool) => match profile.at_pool(&self.site, pool) {
+                Ok(profile) => Ok(Read { profile, source }),
+                Err(problem) => Err(vec![problem]),
+            },
+        }
+    }
+
+    /// Holds a listed cast against the site under its own pool, with everything said of it.
+    pub fn profile_of(&self, listed: &Listed) -> (Option<Profile>, Vec<Problem>) {
+        let mut problems = listed.problems.clone();
+        let Some(raw) = &listed.raw else { return (None, problems) };
+        let (profile, found) = Profile::build(raw, &self.site, None);
+        problems.extend(found);
+        (profile, problems)
+    }
+
+    /// Fingerprint of the site file and of further inputs: 12 hexadecimal digits of SHA-256 over lengths and bytes.
+    pub fn fingerprint(&self, others: &[&Source]) -> String {
+        let mut hash = Sha256::new();
+        for source in std::iter::once(&self.source).chain(others.iter().copied()) {
+            hash.update((source.bytes.len() as u64).to_le_bytes());
+            hash.update(&source.bytes);
+        }
+        let digits = |b: &u8| [b >> 4, b & 15].map(|d| char::from_digit(d.into(), 16).unwrap_or('0'));
+        hash.finalize().iter().take(6).flat_map(digits).collect()
+    }
+}
+
+/// The last part of a path, as the user lists it.
+fn base(name: &str) -> &str {
+    Path::new(name).file_name().and_then(|n| n.to_str()).unwrap_or(name)
+}
+
+fn is_csv(path: &Path) -> bool {
+    path.extension().is_some_and(|e| e.eq_ignore_ascii_case("csv"))
+}
+
+fn inside(file: &str) -> Option<Result<Source, Problem>> {
+    let contents = DEMONSTRATIONS.get_file(file)?.contents();
+    let format = if is_csv(Path::new(file)) { Format::Csv } else { Format::Yaml };
+    Some(text::read_from(file, contents, format))
+}
+
+/// Every problem of a site folder: the site file, then each cast; and the units its user reads.
+pub fn check(named: &str) -> (Vec<Problem>, System) {
+    match Folder::open(named) {
+        Err(refused) => (refused.problems, refused.system),
+        Ok(folder) => {
+            let mut problems = folder.notes.clone();
+            let casts = folder.casts();
+            problems.extend(folder.casts_said(&casts));
+            for listed in &casts {
+                problems.extend(folder.profile_of(listed).1);
+            }
+            (problems, folder.site.units.system())
+        }
+    }
+}

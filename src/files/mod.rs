@@ -1,0 +1,14 @@
+//! Reading and writing of disk: the only part of the program that touches files.
+//!
+//! Every reader takes hostile bytes without panic, reads a bounded amount, and says what is wrong, on
+//! which line, and what to do about it.
+
+pub mod atomic;
+pub mod cast;
+pub mod cursor;
+pub mod folder;
+mod lines;
+pub mod site;
+pub mod table;
+pub mod text;
+pub mod yaml;

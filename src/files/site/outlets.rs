@@ -1,0 +1,93 @@
+//! Wells and outlets of `site.yaml`.
+
+use crate::files::cursor::{Map, Value};
+use crate::files::yaml::Node;
+use crate::problem::Problem;
+use crate::site::{Leakage, Opens, Position, RawOutlet, RawWell};
+use crate::units::Dimension;
+
+use super::{In, number, pair, text, within};
+
+pub(super) fn well(read: &In, map: &Map) -> RawWell {
+    RawWell {
+        name: map.required("name").and_then(|v| v.text().map(str::to_owned)),
+        conduit_m: read.required(map, "conduit", Dimension::Length),
+        max_open: number(map, "max_open"),
+        max_head_loss_m: read.optional(map, "max_head_loss", Dimension::Length),
+        max_flow_m3s: read.optional(map, "max_flow", Dimension::Flow),
+    }
+}
+
+pub(super) fn outlet(read: &In, map: &Map) -> RawOutlet {
+    let mut out = RawOutlet {
+        name: map.required("name").and_then(|v| v.text().map(str::to_owned)),
+        well: text(map, "well"),
+        kind: text(map, "kind"),
+        centre_m: read.required(map, "centre", Dimension::Length),
+        height_m: read.optional(map, "height", Dimension::Length),
+        width_m: read.optional(map, "width", Dimension::Length),
+        diameter_m: read.optional(map, "diameter", Dimension::Length),
+        angle_deg: number(map, "angle"),
+        loss: number(map, "loss"),
+        discharge: number(map, "discharge"),
+        opens: opens(map),
+        gated: map.optional("gated").and_then(|v| v.boolean()),
+        min_submergence_m: read.optional(map, "min_submergence", Dimension::Length),
+        ..RawOutlet::default()
+    };
+    out.rating = map
+        .optional("rating")
+        .and_then(|v| v.list())
+        .unwrap_or_default()
+        .iter()
+        .filter_map(|row| pair(read, row, [Dimension::Length, Dimension::Flow]))
+        .collect();
+    out.positions = map
+        .optional("positions")
+        .and_then(|v| v.list())
+        .unwrap_or_default()
+        .iter()
+        .filter_map(|v| position(read, v))
+        .collect();
+    within(map, "flow", |m| {
+        out.flow_min_m3s = read.optional(m, "min", Dimension::Flow);
+        out.flow_max_m3s = read.optional(m, "max", Dimension::Flow);
+    });
+    within(map, "leakage", |m| {
+        let flow = read.required(m, "flow", Dimension::Flow);
+        let head = read.required(m, "head", Dimension::Length);
+        let range_m3s = m.optional("range").and_then(|v| pair(read, &v, [Dimension::Flow, Dimension::Flow]));
+        out.leakage = flow.zip(head).map(|(flow_m3s, head_m)| Leakage { flow_m3s, head_m, range_m3s });
+    });
+    out
+}
+
+fn opens(map: &Map) -> Opens {
+    let Some(value) = map.optional("opens") else { return Opens::Up };
+    match value.text() {
+        Some("up") | None => Opens::Up,
+        Some("down") => Opens::Down,
+        Some("both") => Opens::Both,
+        Some(_) => {
+            value.report(Problem::refused(
+                "opens",
+                "a gate opens `up`, `down` or `both`",
+                "say from which edge the open part grows",
+            ));
+            Opens::Up
+        }
+    }
+}
+
+fn position(read: &In, value: &Value) -> Option<Position> {
+    if let Node::Map(_) = value.node() {
+        let map = value.map()?;
+        let name = map.required("name").and_then(|v| v.text().map(str::to_owned));
+        let crest_m = read.optional(&map, "crest", Dimension::Length);
+        let opening = read.optional(&map, "open", Dimension::Percent).map_or(1.0, |p| p / 100.0);
+        map.finish();
+        return Some(Position { name: name?, opening, crest_m });
+    }
+    let percent = read.quantity(value, Dimension::Percent)?;
+    Some(Position { name: format!("{percent}"), opening: percent / 100.0, crest_m: None })
+}

@@ -1,0 +1,90 @@
+//! From gates to flows: capacity, submergence and leakage of each opening under a pool.
+//!
+//! Methods: `docs/methods.md`, section 4.
+
+use crate::site::{Kind, Outlet, Site};
+use crate::water::G_M_S2;
+use crate::withdrawal::free_crest_flow_m3s;
+
+/// Loss of a well port where the site gives none, on the port velocity (choice; marked `assumed-loss`).
+pub const ASSUMED_LOSS: f64 = 1.5;
+/// Discharge coefficient of a direct outlet where the site gives none (common practice, no source).
+pub const ASSUMED_DISCHARGE: f64 = 0.6;
+
+/// Water above the top of the open part, m; negative when it stands out of the water.
+pub fn submergence_m(outlet: &Outlet, opening: f64, pool_m: f64) -> f64 {
+    pool_m - outlet.open_part(opening).top_m
+}
+
+/// Whether an outlet has water: the centre-line of its open part, or the crest, below the pool.
+pub fn is_wet(outlet: &Outlet, opening: f64, pool_m: f64) -> bool {
+    outlet.open_part(opening).centre_m < pool_m
+}
+
+/// Most flow an outlet passes under a pool, m3/s: the site's own figure, else computed from opening and
+/// head: a direct outlet Cd A sqrt(2 g h), a well port A sqrt(2 g h/K) at the head its well allows, a crest
+/// by its rating or as a free overfall, whichever is less. `None` where nothing bounds it.
+pub fn capacity_m3s(site: &Site, outlet: &Outlet, opening: f64, pool_m: f64) -> Option<f64> {
+    if outlet.is_crest() {
+        let free = crest_flow_m3s(outlet, pool_m)?;
+        return Some(outlet.flow_max_m3s.map_or(free, |most| most.min(free)));
+    }
+    if outlet.flow_max_m3s.is_some() {
+        return outlet.flow_max_m3s;
+    }
+    let part = outlet.open_part(opening);
+    match outlet.well.and_then(|w| site.wells.get(w)) {
+        None => {
+            let head = (pool_m - part.centre_m).max(0.0);
+            let coefficient = outlet.discharge.unwrap_or(ASSUMED_DISCHARGE);
+            Some(coefficient * part.area_m2 * (2.0 * G_M_S2 * head).sqrt())
+        }
+        Some(well) => {
+            let head = well.max_head_loss_m?;
+            let loss = outlet.loss.unwrap_or(ASSUMED_LOSS);
+            Some(part.area_m2 * (2.0 * G_M_S2 * head / loss).sqrt())
+        }
+    }
+}
+
+/// Flow over an open crest under a pool, m3/s: the site's rating where it has one (held beyond its last row),
+/// else a free overfall. `None` for an outlet that is no crest.
+pub fn crest_flow_m3s(outlet: &Outlet, pool_m: f64) -> Option<f64> {
+    let Kind::Crest { length_m, rating, .. } = &outlet.kind else { return None };
+    let head = (pool_m - outlet.centre_m).max(0.0);
+    let (Some(first), Some(last)) = (rating.first(), rating.last()) else {
+        return Some(free_crest_flow_m3s(head, *length_m));
+    };
+    if head <= first.0 {
+        return Some(first.1 * if first.0 > 0.0 { head / first.0 } else { 1.0 });
+    }
+    let flow = rating
+        .windows(2)
+        .find(|w| head <= w[1].0)
+        .map_or(last.1, |w| w[0].1 + (w[1].1 - w[0].1) * (head - w[0].0) / (w[1].0 - w[0].0));
+    Some(flow)
+}
+
+/// Whether a crest spills whenever the pool stands above it.
+pub fn spills_by_itself(outlet: &Outlet) -> bool {
+    matches!(outlet.kind, Kind::Crest { gated: false, .. })
+}
+
+/// Area of the port that would leak as a shut gate does, always open, m2: q_ref sqrt(K/(2 g h_ref)).
+pub fn leak_area_m2(outlet: &Outlet) -> f64 {
+    let loss = outlet.loss.unwrap_or(ASSUMED_LOSS);
+    outlet.leakage.map_or(0.0, |leak| leak.flow_m3s * (loss / (2.0 * G_M_S2 * leak.head_m)).sqrt())
+}
+
+/// Leak of a shut gate under a head, m3/s: a port always open, so it goes as the root of the head.
+/// `place` from 0 to 1 moves within the range the site gives about its figure; 0.5 is the figure itself.
+pub fn leak_m3s(outlet: &Outlet, head_m: f64, place: f64) -> f64 {
+    let Some(leak) = outlet.leakage else { return 0.0 };
+    let (low, high) = leak.range_m3s.unwrap_or((leak.flow_m3s, leak.flow_m3s));
+    let reference = if place < 0.5 {
+        low + (leak.flow_m3s - low) * place * 2.0
+    } else {
+        leak.flow_m3s + (high - leak.flow_m3s) * (place - 0.5) * 2.0
+    };
+    reference * (head_m.max(0.0) / leak.head_m).sqrt()
+}

@@ -1,0 +1,217 @@
+//! The band: seeded perturbed cases, the same for every mix.
+//!
+//! Methods: `docs/methods.md`, section 9.
+
+use rand_distr::{Distribution, StandardNormal, Uniform};
+use rand_pcg::Pcg64Mcg;
+use rand_pcg::rand_core::SeedableRng;
+
+use crate::profile::{Column, OxygenSample, Profile, Sample, greatest_buoyancy, mixed_base_m};
+use crate::site::{BandInputs, Site};
+use crate::withdrawal::CrestForm;
+
+use super::blend::{Blend, draw_levels, overlapping, release, release_joined};
+use super::levels::{Setting, levels};
+
+/// One member: one draw of each source of doubt, the same for every mix.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Member {
+    /// Common offset of the cast, C.
+    pub cast_c: f64,
+    /// Common offset of the oxygen readings, mg/L.
+    pub cast_mg_l: f64,
+    /// Heave in standard deviations.
+    pub heave: f64,
+    /// Factor on every flow as it enters the zones.
+    pub flow: f64,
+    /// Zone factor f.
+    pub zone_factor: f64,
+    /// Place within the range of each leak, 0 to 1.
+    pub leak: f64,
+    /// Share taken from overlapping levels computed as one sink, 0 to 1.
+    pub joined: f64,
+    /// Relation the crests use.
+    pub crest: CrestForm,
+    /// What the method misses, C.
+    pub release_c: f64,
+    /// What the method misses, mg/L.
+    pub release_mg_l: f64,
+}
+
+/// Draws the members: fixed seed, so the same inputs give the same band.
+pub fn members(inputs: &BandInputs) -> Vec<Member> {
+    let mut random = Pcg64Mcg::seed_from_u64(inputs.seed);
+    let low = Uniform::new_inclusive(inputs.zone_low, 1.0);
+    let high = Uniform::new_inclusive(1.0, inputs.zone_high);
+    let unit = Uniform::new_inclusive(0.0, 1.0);
+    (0..inputs.members)
+        .map(|i| {
+            let mut normal = || -> f64 { StandardNormal.sample(&mut random) };
+            let (cast_c, cast_mg_l, heave) =
+                (inputs.cast_c * normal(), inputs.cast_mg_l * normal(), normal());
+            let flow = 1.0 + inputs.flow_share * normal();
+            let (release_c, release_mg_l) = (inputs.release_c * normal(), inputs.release_mg_l * normal());
+            let mut between = |range: &Result<Uniform<f64>, _>, fallback: f64| {
+                range.as_ref().map_or(fallback, |range: &Uniform<f64>| range.sample(&mut random))
+            };
+            // half of the members thinner than published, half thicker
+            let zone_factor = if i % 2 == 0 { between(&low, 1.0) } else { between(&high, 1.0) };
+            let (leak, joined) = (between(&unit, 0.5), between(&unit, 0.5));
+            let crest = match i / 2 % 4 {
+                1 => CrestForm::Control,
+                3 => CrestForm::Larger,
+                _ => CrestForm::Overflow,
+            };
+            Member {
+                cast_c,
+                cast_mg_l,
+                heave,
+                flow: flow.max(0.0),
+                zone_factor,
+                leak,
+                joined,
+                crest,
+                release_c,
+                release_mg_l,
+            }
+        })
+        .collect()
+}
+
+/// The members with the columns they make of a profile; prepared once, used for every mix.
+pub struct Perturbed {
+    cases: Vec<(Member, Column)>,
+    /// 2 where the profile holds a large inversion, else 1.
+    widening: f64,
+}
+
+/// Release of every member: temperature (C) and oxygen (mg/L).
+#[derive(Debug, Clone, PartialEq)]
+pub struct Spread {
+    /// Temperature and oxygen of each member, in the order of the members.
+    pub cases: Vec<(f64, Option<f64>)>,
+}
+
+impl Perturbed {
+    /// Prepares the members' columns for a profile of some age in days (0 when unknown).
+    pub fn new(site: &Site, profile: &Profile, age_days: f64) -> Self {
+        let sd =
+            (site.band.heave_m + site.band.heave_m_per_day * age_days.max(0.0)).min(site.band.heave_max_m);
+        let knee = knee_m(profile);
+        let cases = members(&site.band)
+            .into_iter()
+            .filter_map(|m| {
+                let lift = heaved(profile, knee, m.heave * sd);
+                let samples: Vec<Sample> = profile
+                    .samples
+                    .iter()
+                    .map(|s| Sample {
+                        elevation_m: lift(s.elevation_m),
+                        temperature_c: s.temperature_c + m.cast_c,
+                        ..*s
+                    })
+                    .collect();
+                let oxygen: Vec<OxygenSample> = profile
+                    .oxygen
+                    .iter()
+                    .map(|o| OxygenSample {
+                        elevation_m: lift(o.elevation_m),
+                        oxygen_mg_l: (o.oxygen_mg_l + m.cast_mg_l).max(0.0),
+                    })
+                    .collect();
+                Some((m, Profile::column_of(site, profile.pool_m, &samples, &oxygen)?))
+            })
+            .collect();
+        Self { cases, widening: if profile.large_inversion { 2.0 } else { 1.0 } }
+    }
+
+    /// The release of a setting in every member; `centre` is the unperturbed release, about which the spread
+    /// widens where the profile is doubtful.
+    pub fn spread(&self, site: &Site, groups: &[Vec<usize>], setting: &Setting, centre: &Blend) -> Spread {
+        let widen = |value: f64, middle: f64| middle + self.widening * (value - middle);
+        let cases = self
+            .cases
+            .iter()
+            .filter_map(|(m, column)| {
+                let mut levels = levels(site, groups, setting, column.surface_m(), m.leak, m.crest);
+                for level in &mut levels {
+                    level.sink.flow_m3s *= m.flow;
+                }
+                let drawn = draw_levels(column, &levels, m.zone_factor);
+                let apart = release(&drawn)?;
+                let overlaps = overlapping(&drawn);
+                let joined = if overlaps.is_empty() {
+                    apart
+                } else {
+                    release_joined(column, &drawn, &overlaps, m.zone_factor).unwrap_or(apart)
+                };
+                let between = |a: f64, b: f64| a + m.joined * (b - a);
+                let temperature =
+                    widen(between(apart.temperature_c, joined.temperature_c), centre.temperature_c)
+                        + m.release_c;
+                let oxygen = apart.oxygen_mg_l.zip(joined.oxygen_mg_l).map(|(a, b)| {
+                    let value = between(a, b);
+                    (widen(value, centre.oxygen_mg_l.unwrap_or(value)) + m.release_mg_l).max(0.0)
+                });
+                Some((temperature, oxygen))
+            })
+            .collect();
+        Spread { cases }
+    }
+}
+
+/// Elevation whose water heaves most: where density changes fastest, else the base of the mixed layer, m.
+fn knee_m(profile: &Profile) -> f64 {
+    greatest_buoyancy(&profile.column)
+        .filter(|b| b.0 > 0.0)
+        .map_or_else(|| mixed_base_m(&profile.column), |b| b.1)
+}
+
+/// Heave: the knee moves by `by`, surface and bed stay, between them the movement falls off linearly. Held to
+/// half the water on either side of the knee, so that the column never folds.
+fn heaved(profile: &Profile, knee: f64, by: f64) -> impl Fn(f64) -> f64 {
+    let (bed, surface) = (profile.column.bed_m(), profile.column.surface_m());
+    let by = by.clamp(-0.5 * (knee - bed).max(0.0), 0.5 * (surface - knee).max(0.0));
+    move |z: f64| {
+        let share = if z >= knee {
+            if surface > knee { (surface - z) / (surface - knee) } else { 0.0 }
+        } else if knee > bed {
+            ((z - bed) / (knee - bed)).max(0.0)
+        } else {
+            0.0
+        };
+        z + by * share
+    }
+}
+
+impl Spread {
+    /// 10-90 % band of the temperature, C.
+    pub fn band_c(&self) -> Option<(f64, f64)> {
+        band(self.cases.iter().map(|c| c.0).collect())
+    }
+
+    /// 10-90 % band of the oxygen, mg/L; `None` where any member's is missing.
+    pub fn band_oxygen_mg_l(&self) -> Option<(f64, f64)> {
+        band(self.cases.iter().map(|c| c.1).collect::<Option<_>>()?)
+    }
+
+    /// Share of the perturbed cases for which a test holds.
+    pub fn share(&self, holds: impl Fn(f64, Option<f64>) -> bool) -> Option<f64> {
+        let count = self.cases.iter().filter(|c| holds(c.0, c.1)).count();
+        (!self.cases.is_empty()).then(|| count as f64 / self.cases.len() as f64)
+    }
+}
+
+fn band(mut values: Vec<f64>) -> Option<(f64, f64)> {
+    values.sort_by(f64::total_cmp);
+    Some((quantile(&values, 0.1)?, quantile(&values, 0.9)?))
+}
+
+/// Quantile of sorted values, linear between order statistics.
+fn quantile(sorted: &[f64], share: f64) -> Option<f64> {
+    let last = sorted.len().checked_sub(1)?;
+    let place = share * last as f64;
+    let below = (0..=last).take_while(|&i| i as f64 <= place).last()?;
+    let above = (below + 1).min(last);
+    Some(sorted[below] + (place - below as f64) * (sorted[above] - sorted[below]))
+}

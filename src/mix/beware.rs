@@ -1,0 +1,147 @@
+//! What to beware of in a setting: thin assumptions, overlaps, missing oxygen, spill.
+//!
+//! Methods: `docs/methods.md`, section 5.
+
+use std::f64::consts::PI;
+
+use crate::problem::Problem;
+use crate::profile::{Column, buoyancy_s2};
+use crate::site::Site;
+use crate::units::say;
+use crate::withdrawal::{End, Side};
+
+use super::blend::{Blend, Drawn, overlapping, release_joined};
+
+/// A zone thinner than this many opening heights is no longer that of a point sink (common practice, no source).
+const THIN_HEIGHTS: f64 = 2.0;
+/// A free limit stands in mixed water when density changes less than this over a metre there, kg/m3: what a
+/// hundredth of a degree makes of cold water (choice).
+const MIXED_KG_M3_M: f64 = 3e-4;
+/// More of the release than this from water below 1 mg/L makes the oxygen an upper bound (choice).
+const LOW_OXYGEN_SHARE: f64 = 0.05;
+/// Rotation of the Earth, rad/s (standard).
+const EARTH_RAD_S: f64 = 7.292_115e-5;
+
+fn level_name(site: &Site, drawn: &Drawn) -> String {
+    let names: Vec<&str> = drawn.level.outlets.iter().map(|&i| site.outlets[i].name.as_str()).collect();
+    names.join(", ")
+}
+
+/// Where the zone's assumptions are thin.
+pub(super) fn zones(site: &Site, column: &Column, drawn: &[Drawn], warnings: &mut Vec<Problem>) {
+    for d in drawn {
+        let Some(zone) = &d.zone else { continue };
+        let name = level_name(site, d);
+        let mixed = |side: &Side| {
+            let density = |by: f64| column.density_kg_m3(side.limit_m + by);
+            side.end == End::Free && (density(-0.5) - density(0.5)).abs() < MIXED_KG_M3_M
+        };
+        let limits: Vec<String> = [(&zone.lower, "lower"), (&zone.upper, "upper")]
+            .into_iter()
+            .filter(|(side, _)| mixed(side))
+            .map(|(side, what)| format!("{what} limit ({})", say::m(side.limit_m, 1)))
+            .collect();
+        if !limits.is_empty() {
+            warnings.push(Problem::flag(
+                "mixed-layer-limit",
+                format!(
+                    "{name}: the {} lies in mixed water, where nothing holds it",
+                    limits.join(" and the ")
+                ),
+                "read it as a guess",
+            ));
+        }
+        let reach = (zone.upper.limit_m - zone.centre_m).min(zone.centre_m - zone.lower.limit_m);
+        let free = zone.upper.end == End::Free && zone.lower.end == End::Free;
+        if free && reach < THIN_HEIGHTS * d.level.height_m {
+            warnings.push(Problem::flag(
+                "thin-zone",
+                format!(
+                    "{name}: the zone reaches only {} from its centre, less than {THIN_HEIGHTS:.0} opening heights: its shape is rough",
+                    say::m(reach, 1)
+                ),
+                "",
+            ));
+        }
+    }
+    if !column.has_width() {
+        warnings.push(Problem::note(
+            "width-assumed",
+            "the pool table gives no widths: the pool is taken as equally wide at every elevation",
+        ));
+    }
+}
+
+pub(super) fn overlaps(column: &Column, drawn: &[Drawn], release: &Blend, warnings: &mut Vec<Problem>) {
+    let groups = overlapping(drawn);
+    if groups.is_empty() {
+        return;
+    }
+    if let Some(joined) = release_joined(column, drawn, &groups, 1.0) {
+        warnings.push(Problem::flag(
+            "zones-overlap",
+            format!(
+                "open levels draw from each other's zones; taken as one sink they would change the release by {}, which the band includes",
+                say::dc(joined.temperature_c - release.temperature_c, 1).signed()
+            ),
+            "",
+        ));
+    }
+}
+
+pub(super) fn oxygen(site: &Site, drawn: &[Drawn], release: &Blend, warnings: &mut Vec<Problem>) {
+    for d in drawn {
+        let Some(draw) = &d.draw else { continue };
+        if draw.oxygen_mg_l.is_none() {
+            let words = if draw.oxygen_missing_share >= 1.0 - 1e-9 {
+                format!("there is no oxygen reading in the zone of {}", level_name(site, d))
+            } else {
+                format!(
+                    "{:.0} % of the water of {} comes from where there is no oxygen reading",
+                    100.0 * draw.oxygen_missing_share,
+                    level_name(site, d)
+                )
+            };
+            warnings.push(Problem::flag(
+                "oxygen-missing",
+                format!("{words}: release oxygen stays unknown"),
+                "measure oxygen over the whole depth next time",
+            ));
+        }
+    }
+    if release.oxygen_low_share > LOW_OXYGEN_SHARE && release.oxygen_mg_l.is_some() {
+        warnings.push(Problem::flag(
+            "oxygen-upper-bound",
+            format!(
+                "{:.0} % of the release comes from water below 1 mg/L, whose sulphide, iron and manganese take up oxygen after mixing",
+                100.0 * release.oxygen_low_share
+            ),
+            "read the release oxygen as an upper bound",
+        ));
+    }
+}
+
+pub(super) fn cautions(site: &Site, column: &Column, drawn: &[Drawn], warnings: &mut Vec<Problem>) {
+    let spills = drawn.iter().any(|d| d.level.outlets.iter().any(|&i| site.outlets[i].is_crest()));
+    if spills {
+        warnings.push(Problem::flag(
+            "dissolved-gas",
+            "spill takes up air; total dissolved gas is not predicted",
+            "measure it below the dam (110 % is the usual criterion)",
+        ));
+    }
+    if let (Some(latitude), Some(width)) = (site.place.latitude_deg, site.pool.width_m(column.surface_m())) {
+        let (bed, surface) = (column.bed_m(), column.surface_m());
+        let lower = (bed, column.density_kg_m3(bed));
+        let upper = (surface, column.density_kg_m3(surface));
+        let buoyancy = buoyancy_s2(lower, upper).max(0.0).sqrt();
+        let coriolis = (2.0 * EARTH_RAD_S * latitude.to_radians().sin()).abs();
+        if coriolis > 0.0 && buoyancy * (surface - bed) / (PI * coriolis) < width {
+            warnings.push(Problem::flag(
+                "rotation",
+                "the pool is so wide that the Earth's rotation matters: zones may be thicker than computed",
+                "",
+            ));
+        }
+    }
+}

@@ -1,0 +1,302 @@
+//! A setting judged: what stops it, what it gives, how it stands, and what to beware of.
+
+use chrono::NaiveDate;
+
+use crate::intake;
+use crate::problem::Problem;
+use crate::profile::Profile;
+use crate::site::Site;
+use crate::target::{Standing, Target};
+use crate::units::say;
+use crate::withdrawal::CrestForm;
+
+use super::band::{Perturbed, Spread};
+use super::beware;
+use super::blend::{Blend, Drawn, draw_levels, release};
+use super::levels::{Setting, groups, levels};
+
+/// Flow over an ungated crest set by hand may differ from its rating by this share (choice).
+const CREST_SHARE: f64 = 0.05;
+
+/// How the release stands against one target.
+#[derive(Debug, Clone, PartialEq)]
+pub struct TargetStanding {
+    /// Index in the site's targets.
+    pub target: usize,
+    /// Temperature by the rule's statistic, C.
+    pub value_c: Option<f64>,
+    /// Standing of the temperature and distance outside, C.
+    pub temperature: (Standing, Option<f64>),
+    /// Oxygen, mg/L.
+    pub oxygen_mg_l: Option<f64>,
+    /// Standing of the oxygen and distance below, mg/L.
+    pub oxygen: (Standing, Option<f64>),
+    /// Share of the perturbed cases inside the temperature range.
+    pub share_inside: Option<f64>,
+    /// Share of the perturbed cases above the oxygen minimum.
+    pub oxygen_share_inside: Option<f64>,
+    /// Share of the perturbed cases inside both.
+    pub share_inside_both: Option<f64>,
+    /// The strictest rule valid on that date.
+    pub governs: bool,
+}
+
+impl TargetStanding {
+    /// Whether either standing is a miss.
+    pub fn missed(&self) -> bool {
+        [self.temperature.0, self.oxygen.0].iter().any(|s| matches!(s, Standing::Below | Standing::Above))
+    }
+}
+
+/// A setting with everything computed from it.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Mix {
+    /// Levels from the lowest up.
+    pub levels: Vec<Drawn>,
+    /// The release leaving the pool.
+    pub release: Blend,
+    /// The perturbed cases.
+    pub spread: Spread,
+    /// Standing against every target valid on the date.
+    pub targets: Vec<TargetStanding>,
+    /// Limits that nobody gave or that this version cannot judge.
+    pub not_checked: Vec<String>,
+    /// What to beware of, limits broken included.
+    pub warnings: Vec<Problem>,
+}
+
+/// What makes a setting impossible under a pool: a gate out of the water, a flow above capacity. A pool below a
+/// gate is no error in itself; naming that gate in a setting is.
+pub fn refusals(site: &Site, setting: &Setting, pool_m: f64) -> Vec<Problem> {
+    let mut out = Vec::new();
+    for gate in &setting.gates {
+        let Some(outlet) = site.outlets.get(gate.outlet) else { continue };
+        let name = &outlet.name;
+        if !intake::is_wet(outlet, gate.opening, pool_m) {
+            let centre = outlet.open_part(gate.opening).centre_m;
+            out.push(Problem::refused(
+                "dry",
+                format!(
+                    "`{name}` at {} is dry, {} above the pool {}",
+                    say::m(centre, 2),
+                    say::m(centre - pool_m, 2),
+                    say::m(pool_m, 2)
+                ),
+                "choose an outlet below the water",
+            ));
+            continue;
+        }
+        let free = intake::crest_flow_m3s(outlet, pool_m);
+        if let (true, Some(free)) = (intake::spills_by_itself(outlet), free)
+            && (gate.flow_m3s - free).abs() > CREST_SHARE * free
+        {
+            out.push(Problem::refused(
+                "crest-flow",
+                format!(
+                    "`{name}` has no gates: at this pool it passes {}, not {}",
+                    say::m3s(free, 2),
+                    say::m3s(gate.flow_m3s, 2)
+                ),
+                "leave out its flow; it spills by itself",
+            ));
+            continue;
+        }
+        if let Some(most) = intake::capacity_m3s(site, outlet, gate.opening, pool_m)
+            && gate.flow_m3s > most * (1.0 + 1e-9)
+        {
+            out.push(Problem::refused(
+                "capacity",
+                format!(
+                    "{} through `{name}` is above its capacity of {}",
+                    say::m3s(gate.flow_m3s, 2),
+                    say::m3s(most, 2)
+                ),
+                "lower the flow, or share it with another outlet",
+            ));
+        }
+    }
+    out
+}
+
+/// Judges a setting against a profile on a date. `None` when nothing flows.
+pub fn judge(
+    site: &Site,
+    profile: &Profile,
+    perturbed: &Perturbed,
+    setting: &Setting,
+    date: NaiveDate,
+) -> Option<Mix> {
+    let column = &profile.column;
+    let groups = groups(site);
+    let drawn =
+        draw_levels(column, &levels(site, &groups, setting, profile.pool_m, 0.5, CrestForm::Overflow), 1.0);
+    let release = release(&drawn)?;
+    let spread = perturbed.spread(site, &groups, setting, &release);
+    let targets = standings(site, &release, &spread, date);
+    let mut warnings = Vec::new();
+    limits(site, setting, profile.pool_m, &release, &mut warnings);
+    beware::zones(site, column, &drawn, &mut warnings);
+    beware::overlaps(column, &drawn, &release, &mut warnings);
+    beware::oxygen(site, &drawn, &release, &mut warnings);
+    beware::cautions(site, column, &drawn, &mut warnings);
+    Some(Mix { levels: drawn, release, spread, targets, not_checked: not_checked(site, setting), warnings })
+}
+
+/// Standing of a release against every target valid on a date; the rule with the least room governs.
+fn standings(site: &Site, release: &Blend, spread: &Spread, date: NaiveDate) -> Vec<TargetStanding> {
+    let valid = |t: &&(usize, &Target)| t.1.span.contains(date);
+    let all: Vec<(usize, &Target)> = site.targets.iter().enumerate().collect();
+    let mut out: Vec<TargetStanding> = all
+        .iter()
+        .filter(valid)
+        .map(|&(target, rule)| {
+            let value_c = Some(rule.statistic.of_steady(release.temperature_c));
+            let inside = |s: (Standing, Option<f64>)| s.0 == Standing::Inside;
+            let has_range = rule.low_c.is_some() || rule.high_c.is_some();
+            let warm = |t: f64| !has_range || inside(rule.temperature(Some(t)));
+            let aired = |o: Option<f64>| rule.oxygen_min_mg_l.is_none() || inside(rule.oxygen(o));
+            TargetStanding {
+                target,
+                value_c,
+                temperature: rule.temperature(value_c),
+                oxygen_mg_l: release.oxygen_mg_l,
+                oxygen: rule.oxygen(release.oxygen_mg_l),
+                share_inside: if has_range { spread.share(|t, _| warm(t)) } else { None },
+                oxygen_share_inside: if rule.oxygen_min_mg_l.is_some() && release.oxygen_mg_l.is_some() {
+                    spread.share(|_, o| aired(o))
+                } else {
+                    None
+                },
+                share_inside_both: if rule.oxygen_min_mg_l.is_some() && release.oxygen_mg_l.is_none() {
+                    None
+                } else {
+                    spread.share(|t, o| warm(t) && aired(o))
+                },
+                governs: false,
+            }
+        })
+        .collect();
+    let room = |s: &TargetStanding| site.targets[s.target].room(s.value_c, s.oxygen_mg_l);
+    let strictest = out
+        .iter()
+        .enumerate()
+        .filter_map(|(i, s)| Some((i, room(s)?)))
+        .min_by(|a, b| a.1.total_cmp(&b.1))
+        .map(|(i, _)| i);
+    if let Some(i) = strictest {
+        out[i].governs = true;
+    }
+    out
+}
+
+/// Limits of the site that the setting breaks.
+fn limits(site: &Site, setting: &Setting, pool_m: f64, release: &Blend, warnings: &mut Vec<Problem>) {
+    let mut broken = |words: String, cure: &str| warnings.push(Problem::flag("limit", words, cure));
+    let mut wells = vec![(0.0_f64, 0_usize); site.wells.len()];
+    for gate in &setting.gates {
+        let Some(outlet) = site.outlets.get(gate.outlet) else { continue };
+        let name = &outlet.name;
+        let depth = intake::submergence_m(outlet, gate.opening, pool_m);
+        if let Some(least) = outlet.min_submergence_m
+            && depth < least
+        {
+            broken(
+                format!(
+                    "min_submergence of `{name}`: {} of water above it, {} required",
+                    say::m(depth, 2),
+                    say::m(least, 2)
+                ),
+                "use a lower outlet",
+            );
+        }
+        if gate.flow_m3s < outlet.flow_min_m3s {
+            broken(
+                format!(
+                    "flow.min of `{name}`: {} set, {} required",
+                    say::m3s(gate.flow_m3s, 2),
+                    say::m3s(outlet.flow_min_m3s, 2)
+                ),
+                "raise its flow, or shut it",
+            );
+        }
+        if let Some(well) = outlet.well {
+            wells[well].0 += gate.flow_m3s;
+            wells[well].1 += 1;
+        }
+    }
+    for (well, (flow, open)) in site.wells.iter().zip(wells) {
+        if let Some(most) = well.max_flow_m3s
+            && flow > most * (1.0 + 1e-9)
+        {
+            broken(
+                format!(
+                    "max_flow of well `{}`: {} set, {} allowed",
+                    well.name,
+                    say::m3s(flow, 2),
+                    say::m3s(most, 2)
+                ),
+                "lower the flow of its gates",
+            );
+        }
+        if let Some(most) = well.max_open
+            && open > most
+        {
+            broken(
+                format!("max_open of well `{}`: {open} gates open, {most} allowed", well.name),
+                "open fewer of its gates",
+            );
+        }
+    }
+    let total = release.flow_m3s;
+    if let Some(least) = site.release.min_m3s
+        && total < least * (1.0 - 1e-9)
+    {
+        broken(
+            format!("release.min: {} in total, {} required", say::m3s(total, 2), say::m3s(least, 2)),
+            "release more",
+        );
+    }
+    if let Some(most) = site.release.max_m3s
+        && total > most * (1.0 + 1e-9)
+    {
+        broken(
+            format!("release.max: {} in total, {} allowed", say::m3s(total, 2), say::m3s(most, 2)),
+            "release less",
+        );
+    }
+}
+
+/// Limits nobody gave, and those this version does not judge, by name.
+fn not_checked(site: &Site, setting: &Setting) -> Vec<String> {
+    let mut out = Vec::new();
+    let mut used: Vec<usize> = setting.gates.iter().map(|g| g.outlet).collect();
+    used.sort_unstable_by_key(|&i| site.outlets.get(i).map(|o| o.name.clone()));
+    for outlet in used.iter().filter_map(|&i| site.outlets.get(i)) {
+        if outlet.min_submergence_m.is_none() {
+            out.push(format!("min_submergence of {}", outlet.name));
+        }
+        if outlet.flow_max_m3s.is_none() && !outlet.is_crest() {
+            out.push(format!("flow.max of {}", outlet.name));
+        }
+    }
+    let mut wells: Vec<usize> = used.iter().filter_map(|&i| site.outlets.get(i)?.well).collect();
+    wells.sort_unstable_by_key(|&w| &site.wells[w].name);
+    wells.dedup();
+    for well in wells.iter().map(|&w| &site.wells[w]) {
+        out.push(format!("max_head_loss of {}", well.name));
+        if well.max_flow_m3s.is_none() {
+            out.push(format!("max_flow of {}", well.name));
+        }
+        if well.max_open.is_none() {
+            out.push(format!("max_open of {}", well.name));
+        }
+    }
+    if site.release.min_m3s.is_none() {
+        out.push("release.min".into());
+    }
+    if site.release.max_m3s.is_none() {
+        out.push("release.max".into());
+    }
+    out.extend(["max_flow_change", "max_temperature_change", "max_drawdown_per_day"].map(str::to_owned));
+    out
+}

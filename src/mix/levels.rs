@@ -1,0 +1,205 @@
+//! Outlets at one elevation act as one sink: the levels of a site, and what a setting makes of them.
+//!
+//! Methods: `docs/methods.md`, section 4.
+
+use std::f64::consts::PI;
+
+use crate::intake;
+use crate::site::{Kind, Outlet, Site};
+use crate::water::G_M_S2;
+use crate::withdrawal::{CrestForm, Opening, Sink};
+
+/// Crests this near in elevation draw as one, m (choice).
+const SAME_CREST_M: f64 = 0.1;
+/// Angles this near are equal, rad.
+const SAME_ANGLE: f64 = 1e-6;
+
+/// One gate of a setting.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Gate {
+    /// Index of the outlet.
+    pub outlet: usize,
+    /// Opening, 0 to 1.
+    pub opening: f64,
+    /// Flow, m3/s.
+    pub flow_m3s: f64,
+}
+
+/// What is open, and how much passes. Flows of gates that share a well are given, not split.
+#[derive(Debug, Clone, Default, PartialEq)]
+pub struct Setting {
+    /// Gates in any order; the order changes nothing.
+    pub gates: Vec<Gate>,
+}
+
+/// A level under a setting.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Level {
+    /// Outlets that are open or leak, by elevation and name.
+    pub outlets: Vec<usize>,
+    /// Where it draws.
+    pub sink: Sink,
+    /// Tallest opening of the level, m.
+    pub height_m: f64,
+}
+
+/// Groups of linked outlets, from the lowest up: equal angle, and fully open centre-lines no more than half
+/// the smaller full height apart; crests at one elevation. Fixed for a site, whatever is open.
+pub fn groups(site: &Site) -> Vec<Vec<usize>> {
+    let mut order: Vec<usize> = (0..site.outlets.len()).collect();
+    order.sort_by(|&a, &b| by_place(&site.outlets[a], &site.outlets[b]));
+    let mut groups: Vec<Vec<usize>> = Vec::new();
+    for index in order {
+        let links =
+            |group: &Vec<usize>| group.iter().any(|&g| linked(&site.outlets[g], &site.outlets[index]));
+        let mut joined: Vec<usize> = Vec::new();
+        // an outlet can link two groups; they then become one
+        groups.retain_mut(|group| {
+            let link = links(group);
+            if link {
+                joined.append(group);
+            }
+            !link
+        });
+        joined.push(index);
+        joined.sort_by(|&a, &b| by_place(&site.outlets[a], &site.outlets[b]));
+        groups.push(joined);
+    }
+    groups.sort_by(|a, b| match (a.first(), b.first()) {
+        (Some(&a), Some(&b)) => by_place(&site.outlets[a], &site.outlets[b]),
+        _ => std::cmp::Ordering::Equal,
+    });
+    groups
+}
+
+fn by_place(a: &Outlet, b: &Outlet) -> std::cmp::Ordering {
+    a.centre_m.total_cmp(&b.centre_m).then_with(|| a.name.cmp(&b.name))
+}
+
+fn linked(a: &Outlet, b: &Outlet) -> bool {
+    let apart = (a.centre_m - b.centre_m).abs();
+    match (a.is_crest(), b.is_crest()) {
+        (true, true) => apart <= SAME_CREST_M,
+        (false, false) => {
+            (a.angle_rad - b.angle_rad).abs() < SAME_ANGLE && apart <= 0.5 * a.height_m().min(b.height_m())
+        }
+        _ => false,
+    }
+}
+
+/// Levels of a setting under a pool, from the lowest up, leaks included. `leak_place` as in
+/// [`intake::leak_m3s`]; `form` is the relation crests use.
+///
+/// A level's elevation is the area-weighted mean of its open parts. A leak of a direct outlet leaves the dam
+/// beside the set flows; a leak into a well is part of what its conduit carries, so the open gates of that well
+/// give up as much.
+pub fn levels(
+    site: &Site,
+    groups: &[Vec<usize>],
+    setting: &Setting,
+    pool_m: f64,
+    leak_place: f64,
+    form: CrestForm,
+) -> Vec<Level> {
+    let flows = with_leaks(site, setting, pool_m, leak_place);
+    groups
+        .iter()
+        .filter_map(|group| {
+            let mut sums = [0.0_f64; 4]; // area, area x elevation, flow, crest length
+            let mut outlets = Vec::new();
+            let mut height_m = 0.0_f64;
+            for &index in group {
+                let Some(&(opening, flow)) = flows[index].as_ref() else { continue };
+                let outlet = &site.outlets[index];
+                let leaking = opening <= 0.0;
+                let part = outlet.open_part(if leaking { 1.0 } else { opening });
+                let area = if leaking { intake::leak_area_m2(outlet) } else { part.area_m2 };
+                sums[0] += area;
+                sums[1] += area * part.centre_m;
+                sums[2] += flow;
+                if let Kind::Crest { length_m, .. } = outlet.kind {
+                    sums[3] += length_m;
+                }
+                height_m = height_m.max(part.height_m);
+                outlets.push(index);
+            }
+            let first = *outlets.first()?;
+            let opening = if site.outlets[first].is_crest() {
+                Opening::Crest { length_m: sums[3], form }
+            } else {
+                Opening::Port { angle_rad: site.outlets[first].angle_rad }
+            };
+            let sink = Sink { centre_m: sums[1] / sums[0], flow_m3s: sums[2], opening };
+            Some(Level { outlets, sink, height_m })
+        })
+        .collect()
+}
+
+/// Opening and flow of every outlet that gives or could give water: set, spilling by itself, or leaking.
+fn with_leaks(site: &Site, setting: &Setting, pool_m: f64, leak_place: f64) -> Vec<Option<(f64, f64)>> {
+    let mut flows: Vec<Option<(f64, f64)>> = vec![None; site.outlets.len()];
+    for gate in &setting.gates {
+        if let Some(slot) = flows.get_mut(gate.outlet) {
+            *slot = Some((gate.opening, gate.flow_m3s));
+        }
+    }
+    // the head across a well's gates, from the loss of the hardest driven open one
+    let mut well_head = vec![0.0_f64; site.wells.len()];
+    for (outlet, flow) in site.outlets.iter().zip(&flows) {
+        if let (Some(well), Some((opening, flow))) = (outlet.well, flow) {
+            let area = outlet.open_part(*opening).area_m2;
+            let loss = outlet.loss.unwrap_or(intake::ASSUMED_LOSS);
+            well_head[well] = well_head[well].max(loss * (flow / area).powi(2) / (2.0 * G_M_S2));
+        }
+    }
+    let mut well_leak = vec![0.0_f64; site.wells.len()];
+    for (outlet, slot) in site.outlets.iter().zip(&mut flows) {
+        if slot.is_some() || outlet.leakage.is_none() || outlet.centre_m >= pool_m {
+            continue;
+        }
+        let head = outlet.well.map_or(pool_m - outlet.centre_m, |w| well_head[w]);
+        let leak = intake::leak_m3s(outlet, head, leak_place);
+        if leak > 0.0 {
+            *slot = Some((0.0, leak));
+            if let Some(well) = outlet.well {
+                well_leak[well] += leak;
+            }
+        }
+    }
+    for (well, leak) in well_leak.iter().enumerate().filter(|(_, leak)| **leak > 0.0) {
+        let mut open: Vec<&mut (f64, f64)> = site
+            .outlets
+            .iter()
+            .zip(&mut flows)
+            .filter(|(o, _)| o.well == Some(well))
+            .filter_map(|(_, slot)| slot.as_mut())
+            .filter(|slot| slot.0 > 0.0)
+            .collect();
+        let total: f64 = open.iter().map(|slot| slot.1).sum();
+        let kept = if total > 0.0 { ((total - leak) / total).max(0.0) } else { 1.0 };
+        for slot in &mut open {
+            slot.1 *= kept;
+        }
+    }
+    flows
+}
+
+/// Several levels as one sink at their flow-weighted elevation; a crest among them draws as a port in a face.
+pub fn as_one(levels: &[&Level]) -> Option<Sink> {
+    let flow_m3s: f64 = levels.iter().map(|l| l.sink.flow_m3s).sum();
+    if flow_m3s <= 0.0 {
+        return None;
+    }
+    let weighted = |value: &dyn Fn(&Level) -> f64| {
+        levels.iter().map(|l| l.sink.flow_m3s * value(l)).sum::<f64>() / flow_m3s
+    };
+    let angle = |l: &Level| match l.sink.opening {
+        Opening::Port { angle_rad } => angle_rad,
+        Opening::Crest { .. } => PI,
+    };
+    Some(Sink {
+        centre_m: weighted(&|l| l.sink.centre_m),
+        flow_m3s,
+        opening: Opening::Port { angle_rad: weighted(&angle) },
+    })
+}

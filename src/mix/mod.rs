@@ -1,0 +1,12 @@
+//! One setting: what each level draws, what the blend is, how sure, and how it stands.
+
+mod band;
+mod beware;
+mod blend;
+mod judge;
+mod levels;
+
+pub use band::{Member, Perturbed, Spread, members};
+pub use blend::{Blend, Drawn, blend, draw_levels, overlapping, release, release_joined};
+pub use judge::{Mix, TargetStanding, judge, refusals};
+pub use levels::{Gate, Level, Setting, as_one, groups, levels};

@@ -1,0 +1,391 @@
+//! Answers as JSON: SI whatever the display, absent is null, full precision.
+
+use serde::Serialize;
+
+use crate::mix::{Drawn, Mix, TargetStanding};
+use crate::problem::{Problem, Weight};
+use crate::site::Site;
+use crate::tasks::{Context, MixAnswer, PoolAnswer};
+use crate::units::{System, in_system};
+use crate::withdrawal::{End, Opening};
+
+use super::sentence::{METHOD, caution};
+
+#[derive(Serialize)]
+struct Head {
+    site: String,
+    demonstration: bool,
+    on: String,
+    on_from: &'static str,
+    datum: String,
+    version: &'static str,
+    method: &'static str,
+    fingerprint: String,
+    profile: ProfileJson,
+}
+
+#[derive(Serialize)]
+struct ProfileJson {
+    file: String,
+    taken: Option<String>,
+    age_days: Option<f64>,
+    pool_m: f64,
+    samples: usize,
+    flags: Vec<FlagJson>,
+    notes: Vec<FlagJson>,
+}
+
+#[derive(Serialize)]
+struct FlagJson {
+    row: Option<usize>,
+    kind: &'static str,
+    text: String,
+}
+
+#[derive(Serialize)]
+struct MixJson {
+    #[serde(flatten)]
+    head: Head,
+    levels: Vec<LevelJson>,
+    release: ReleaseJson,
+    targets: Vec<TargetJson>,
+    now: Option<NowJson>,
+    not_checked: Vec<String>,
+    warnings: Vec<WarningJson>,
+    caution: &'static str,
+}
+
+#[derive(Serialize)]
+struct NowJson {
+    set: std::collections::BTreeMap<String, f64>,
+    release: ReleaseJson,
+    targets: Vec<TargetJson>,
+}
+
+#[derive(Serialize)]
+struct LevelJson {
+    elevation_m: f64,
+    outlets: Vec<String>,
+    flow_m3s: f64,
+    angle_deg: Option<f64>,
+    zone: Option<ZoneJson>,
+    temperature_c: Option<f64>,
+    oxygen_mg_l: Option<f64>,
+}
+
+#[derive(Serialize)]
+struct ZoneJson {
+    lower_m: f64,
+    upper_m: f64,
+    thickness_m: f64,
+    peak_m: f64,
+    lower_end: &'static str,
+    upper_end: &'static str,
+    boundary_flow_lower_m3s: Option<f64>,
+    boundary_flow_upper_m3s: Option<f64>,
+}
+
+#[derive(Serialize)]
+struct ReleaseJson {
+    flow_m3s: f64,
+    temperature_c: f64,
+    oxygen_mg_l: Option<f64>,
+    band_c: Option<[f64; 2]>,
+    band_oxygen_mg_l: Option<[f64; 2]>,
+}
+
+#[derive(Serialize)]
+struct TargetJson {
+    name: String,
+    point: String,
+    statistic: &'static str,
+    basis: &'static str,
+    value_c: Option<f64>,
+    low_c: Option<f64>,
+    preferred_c: Option<f64>,
+    high_c: Option<f64>,
+    buffer_c: f64,
+    standing: &'static str,
+    by_c: Option<f64>,
+    oxygen_mg_l: Option<f64>,
+    oxygen_min_mg_l: Option<f64>,
+    oxygen_standing: &'static str,
+    oxygen_by_mg_l: Option<f64>,
+    share_inside: Option<f64>,
+    oxygen_share_inside: Option<f64>,
+    share_inside_both: Option<f64>,
+    governs: bool,
+    source: Option<String>,
+}
+
+#[derive(Serialize)]
+struct WarningJson {
+    kind: &'static str,
+    text: String,
+}
+
+#[derive(Serialize)]
+struct PoolJson {
+    #[serde(flatten)]
+    head: Head,
+    layering: LayeringJson,
+    cold_water: Vec<ColdJson>,
+    cold_water_above_m: Option<f64>,
+    outlets: Vec<OutletJson>,
+    caution: &'static str,
+}
+
+#[derive(Serialize)]
+struct LayeringJson {
+    surface_c: f64,
+    bed_c: f64,
+    difference_c: f64,
+    thermocline_m: Option<f64>,
+    thermocline_c_per_m: Option<f64>,
+    steeper_than_1_c_per_m: Option<[f64; 2]>,
+    mixed_base_m: f64,
+    buoyancy_s2: Option<f64>,
+    buoyancy_m: Option<f64>,
+    oxygen_min_mg_l: Option<f64>,
+    oxygen_min_m: Option<f64>,
+    volume_m3: f64,
+    mean_c: f64,
+    heat_j: f64,
+    schmidt_stability_j_m2: f64,
+}
+
+#[derive(Serialize)]
+struct ColdJson {
+    threshold_c: f64,
+    usable_m3: Option<f64>,
+    total_m3: f64,
+    unreachable_m3: Option<f64>,
+}
+
+#[derive(Serialize)]
+struct OutletJson {
+    name: String,
+    centre_m: f64,
+    submergence_m: f64,
+    min_submergence_m: Option<f64>,
+    wet: bool,
+}
+
+#[derive(Serialize)]
+struct ProblemJson {
+    weight: &'static str,
+    kind: &'static str,
+    file: Option<String>,
+    line: Option<usize>,
+    path: Option<String>,
+    text: String,
+    cure: String,
+}
+
+/// The answer of `mix`.
+pub fn mix(context: &Context, answer: &MixAnswer) -> String {
+    let site = context.site();
+    let shown = MixJson {
+        head: head(context, &[]),
+        levels: answer.mix.levels.iter().map(|d| level(site, d)).collect(),
+        release: release(&answer.mix),
+        targets: targets(site, &answer.mix),
+        now: answer.now.as_ref().map(|(setting, mix)| NowJson {
+            set: setting
+                .gates
+                .iter()
+                .filter_map(|g| Some((site.outlets.get(g.outlet)?.name.clone(), g.flow_m3s)))
+                .collect(),
+            release: release(mix),
+            targets: targets(site, mix),
+        }),
+        not_checked: answer.mix.not_checked.clone(),
+        warnings: answer
+            .mix
+            .warnings
+            .iter()
+            .map(|p| WarningJson { kind: p.kind, text: p.sentence(System::Si) })
+            .collect(),
+        caution: caution(),
+    };
+    written(&shown)
+}
+
+/// The answer of `pool`.
+pub fn pool(context: &Context, answer: &PoolAnswer) -> String {
+    let site = context.site();
+    let l = &answer.layering;
+    let shown = PoolJson {
+        head: head(context, &answer.against_previous),
+        layering: LayeringJson {
+            surface_c: l.surface_c,
+            bed_c: l.bed_c,
+            difference_c: l.surface_c - l.bed_c,
+            thermocline_m: l.thermocline.map(|t| t.elevation_m),
+            thermocline_c_per_m: l.thermocline.map(|t| t.gradient_c_m),
+            steeper_than_1_c_per_m: l.thermocline.and_then(|t| t.band_m).map(|(a, b)| [a, b]),
+            mixed_base_m: l.mixed_base_m,
+            buoyancy_s2: l.buoyancy_s2.map(|b| b.0),
+            buoyancy_m: l.buoyancy_s2.map(|b| b.1),
+            oxygen_min_mg_l: l.oxygen_min.map(|o| o.oxygen_mg_l),
+            oxygen_min_m: l.oxygen_min.map(|o| o.elevation_m),
+            volume_m3: l.volume_m3,
+            mean_c: l.mean_c,
+            heat_j: l.heat_j,
+            schmidt_stability_j_m2: l.schmidt_j_m2,
+        },
+        cold_water: answer
+            .cold
+            .iter()
+            .map(|c| ColdJson {
+                threshold_c: c.threshold_c,
+                usable_m3: c.usable_m3,
+                total_m3: c.total_m3,
+                unreachable_m3: c.usable_m3.map(|u| c.total_m3 - u),
+            })
+            .collect(),
+        cold_water_above_m: answer.reach_m,
+        outlets: answer
+            .outlets
+            .iter()
+            .map(|s| {
+                let o = &site.outlets[s.outlet];
+                OutletJson {
+                    name: o.name.clone(),
+                    centre_m: o.centre_m,
+                    submergence_m: s.submergence_m,
+                    min_submergence_m: o.min_submergence_m,
+                    wet: s.wet,
+                }
+            })
+            .collect(),
+        caution: caution(),
+    };
+    written(&shown)
+}
+
+/// The answer of `check`.
+pub fn check(problems: &[Problem]) -> String {
+    let list: Vec<ProblemJson> = problems
+        .iter()
+        .map(|p| ProblemJson {
+            weight: p.weight.word(),
+            kind: p.kind,
+            file: p.place.file.clone(),
+            line: p.place.line,
+            path: p.place.path.clone(),
+            text: p.sentence(System::Si),
+            cure: in_system(&p.cure, System::Si),
+        })
+        .collect();
+    written(&list)
+}
+
+fn written(value: &impl Serialize) -> String {
+    // these structs hold only strings, numbers and lists, which always have a JSON form
+    serde_json::to_string_pretty(value).map_or_else(
+        |e| format!("{{\"error\":\"{e}\"}}\n"),
+        |mut s| {
+            s.push('\n');
+            s
+        },
+    )
+}
+
+fn head(context: &Context, more_flags: &[Problem]) -> Head {
+    let site = context.site();
+    let profile = &context.profile;
+    let of = |weight: Weight| {
+        profile
+            .flags
+            .iter()
+            .chain(more_flags)
+            .filter(|p| p.weight == weight)
+            .map(|p| FlagJson { row: p.place.line, kind: p.kind, text: p.sentence(System::Si) })
+            .collect()
+    };
+    Head {
+        site: site.name.clone(),
+        demonstration: site.demonstration,
+        on: context.on.to_rfc3339(),
+        on_from: context.on_from.words(),
+        datum: site.datum.name().to_owned(),
+        version: env!("CARGO_PKG_VERSION"),
+        method: METHOD,
+        fingerprint: context.fingerprint.clone(),
+        profile: ProfileJson {
+            file: profile.file.clone(),
+            taken: profile.taken.map(|t| t.to_rfc3339()),
+            age_days: context.age_days,
+            pool_m: profile.pool_m,
+            samples: profile.samples.len(),
+            flags: of(Weight::Flag),
+            notes: of(Weight::Note),
+        },
+    }
+}
+
+fn level(site: &Site, drawn: &Drawn) -> LevelJson {
+    LevelJson {
+        elevation_m: drawn.level.sink.centre_m,
+        outlets: drawn.level.outlets.iter().map(|&i| site.outlets[i].name.clone()).collect(),
+        flow_m3s: drawn.level.sink.flow_m3s,
+        angle_deg: match drawn.level.sink.opening {
+            Opening::Port { angle_rad } => Some(angle_rad.to_degrees()),
+            Opening::Crest { .. } => None,
+        },
+        zone: drawn.zone.map(|z| ZoneJson {
+            lower_m: z.lower.limit_m,
+            upper_m: z.upper.limit_m,
+            thickness_m: z.thickness_m(),
+            peak_m: z.peak_m,
+            lower_end: if z.lower.end == End::Free { "free" } else { "bed" },
+            upper_end: if z.upper.end == End::Free { "free" } else { "surface" },
+            boundary_flow_lower_m3s: z.lower.boundary_flow_m3s,
+            boundary_flow_upper_m3s: z.upper.boundary_flow_m3s,
+        }),
+        temperature_c: drawn.draw.map(|d| d.temperature_c),
+        oxygen_mg_l: drawn.draw.and_then(|d| d.oxygen_mg_l),
+    }
+}
+
+fn release(mix: &Mix) -> ReleaseJson {
+    let ends = |band: Option<(f64, f64)>| band.map(|(low, high)| [low, high]);
+    ReleaseJson {
+        flow_m3s: mix.release.flow_m3s,
+        temperature_c: mix.release.temperature_c,
+        oxygen_mg_l: mix.release.oxygen_mg_l,
+        band_c: ends(mix.spread.band_c()),
+        band_oxygen_mg_l: ends(mix.spread.band_oxygen_mg_l()),
+    }
+}
+
+fn targets(site: &Site, mix: &Mix) -> Vec<TargetJson> {
+    mix.targets.iter().map(|s| target(site, s)).collect()
+}
+
+fn target(site: &Site, s: &TargetStanding) -> TargetJson {
+    let rule = &site.targets[s.target];
+    TargetJson {
+        name: rule.name.clone(),
+        point: rule.point.clone(),
+        statistic: rule.statistic.name(),
+        basis: "steady",
+        value_c: s.value_c,
+        low_c: rule.low_c,
+        preferred_c: rule.preferred_c,
+        high_c: rule.high_c,
+        buffer_c: rule.buffer_c,
+        standing: s.temperature.0.word(),
+        by_c: s.temperature.1,
+        oxygen_mg_l: s.oxygen_mg_l,
+        oxygen_min_mg_l: rule.oxygen_min_mg_l,
+        oxygen_standing: s.oxygen.0.word(),
+        oxygen_by_mg_l: s.oxygen.1,
+        share_inside: s.share_inside,
+        oxygen_share_inside: s.oxygen_share_inside,
+        share_inside_both: s.share_inside_both,
+        governs: s.governs,
+        source: rule.source.clone(),
+    }
+}

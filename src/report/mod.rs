@@ -1,0 +1,9 @@
+//! Results to text and JSON, as pure functions.
+
+mod column;
+pub mod json;
+mod sentence;
+pub mod text;
+
+pub use column::drawn_column;
+pub use sentence::{METHOD, caution, flags_of};

@@ -1,0 +1,201 @@
+//! What a setting gives: release, standings, levels and the drawn column.
+
+use std::fmt::Write as _;
+
+use crate::mix::{Drawn, Mix, Setting, TargetStanding};
+use crate::problem::harmless;
+use crate::site::Site;
+use crate::target::{Standing, Target};
+use crate::tasks::{Context, MixAnswer};
+use crate::units::{Dimension, System, figure};
+use crate::withdrawal::{End, Side};
+
+use super::{
+    drawn_column, fitted, flags_of, flow, labelled, length, list, oxygen, step, temperature, wrapped,
+};
+
+pub(super) fn body(context: &Context, answer: &MixAnswer) -> String {
+    let (site, system) = (context.site(), context.system);
+    let total = flow(answer.mix.release.flow_m3s, system);
+    let mut out =
+        labelled("Set", &format!("{} = {total} in total", setting_words(site, &answer.setting, system)));
+    out.push_str(&labelled("Release", &release_line(&answer.mix, system)));
+    if let Some((now, mix)) = &answer.now {
+        out.push_str(&against_now(site, now, mix, &answer.mix, system));
+    }
+    out.push_str(&labelled("", "leaving the pool; brackets hold 10-90 % of our perturbed cases"));
+    out.push('\n');
+    out.push_str(&standings(site, &answer.mix, system));
+    out.push_str(&levels(site, &answer.mix.levels, system));
+    out.push('\n');
+    out.push_str(&drawn_column(site, &context.profile, &answer.mix.levels, system));
+    out.push('\n');
+    out.push_str(&list("This setting", &flags_of(&answer.mix.warnings), false, system));
+    out
+}
+
+pub(super) fn not_checked(answer: &MixAnswer) -> String {
+    wrapped(&format!("Not checked: {}", answer.mix.not_checked.join(", ")), 13)
+}
+
+/// What is set, for each gate: `N3 600 cfs`.
+fn setting_words(site: &Site, setting: &Setting, system: System) -> String {
+    let mut gates: Vec<(&str, f64)> = setting
+        .gates
+        .iter()
+        .filter_map(|g| Some((site.outlets.get(g.outlet)?.name.as_str(), g.flow_m3s)))
+        .collect();
+    gates.sort_unstable_by(|a, b| a.0.cmp(b.0));
+    let words: Vec<String> =
+        gates.iter().map(|(name, q)| format!("{} {}", harmless(name), flow(*q, system))).collect();
+    words.join(", ")
+}
+
+fn release_line(mix: &Mix, system: System) -> String {
+    let unit = system.unit(Dimension::Temperature);
+    let ends = |band: Option<(f64, f64)>, digits: &dyn Fn(f64) -> String| {
+        band.map_or_else(
+            || "no band".to_owned(),
+            |(low, high)| format!("{} to {}", digits(low), digits(high)),
+        )
+    };
+    let mut out = format!(
+        "{} ({}), oxygen {}",
+        temperature(mix.release.temperature_c, system),
+        ends(mix.spread.band_c(), &|c| figure(c, unit, 1)),
+        oxygen(mix.release.oxygen_mg_l)
+    );
+    if mix.release.oxygen_mg_l.is_some() {
+        let _ = write!(out, " ({})", ends(mix.spread.band_oxygen_mg_l(), &|o| format!("{o:.1}")));
+    }
+    out
+}
+
+fn against_now(site: &Site, now: &Setting, was: &Mix, tried: &Mix, system: System) -> String {
+    let mut out = labelled("Now", &setting_words(site, now, system));
+    out.push_str(&labelled("", &release_line(was, system)));
+    let shown = |by: f64, unit: &str, words: [&str; 2]| {
+        if by.abs() < 0.05 {
+            "the same to a tenth".to_owned()
+        } else {
+            format!("{:.1} {unit} {}", by.abs(), words[usize::from(by < 0.0)])
+        }
+    };
+    let unit = system.unit(Dimension::TemperatureDifference);
+    let warmer = unit.from_si(tried.release.temperature_c - was.release.temperature_c);
+    let mut words =
+        format!("against now: temperature {}", shown(warmer, unit.symbol(), ["warmer", "colder"]));
+    if let Some((a, b)) = tried.release.oxygen_mg_l.zip(was.release.oxygen_mg_l) {
+        let _ = write!(words, ", oxygen {}", shown(a - b, "mg/L", ["higher", "lower"]));
+    }
+    out.push_str(&labelled("", &words));
+    out
+}
+
+fn range(rule: &Target, system: System) -> String {
+    let unit = system.unit(Dimension::Temperature);
+    let mut parts = Vec::new();
+    match (rule.low_c, rule.high_c) {
+        (Some(low), Some(high)) => {
+            parts.push(format!("{} to {}", figure(low, unit, 1), temperature(high, system)));
+        }
+        (Some(low), None) => parts.push(format!("from {}", temperature(low, system))),
+        (None, Some(high)) => parts.push(format!("to {}", temperature(high, system))),
+        (None, None) => {}
+    }
+    if rule.buffer_c > 0.0 {
+        parts.push(format!("buffer {}", step(rule.buffer_c, system)));
+    }
+    if let Some(preferred) = rule.preferred_c {
+        parts.push(format!("preferred {}", temperature(preferred, system)));
+    }
+    if let Some(least) = rule.oxygen_min_mg_l {
+        parts.push(format!("oxygen at least {least:.1} mg/L"));
+    }
+    parts.join(", ")
+}
+
+/// `ABOVE by 0.4 F`; a miss smaller than the last digit shown must not read as none.
+fn missed(standing: Standing, by: f64, unit: &str) -> String {
+    let amount = if by < 0.05 { format!("less than 0.1 {unit}") } else { format!("{by:.1} {unit}") };
+    format!("{} by {amount}", standing.word().to_uppercase())
+}
+
+fn standing_words(s: &TargetStanding, rule: &Target, system: System) -> String {
+    let unit = system.unit(Dimension::TemperatureDifference);
+    let warm = match s.temperature {
+        (Standing::Unknown, _) => None,
+        (standing, Some(by)) if by > 0.0 => {
+            Some(format!("temperature {}", missed(standing, unit.from_si(by), unit.symbol())))
+        }
+        (standing, _) => Some(format!("temperature {}", standing.word())),
+    };
+    let aired = match s.oxygen {
+        (Standing::Unknown, _) if rule.oxygen_min_mg_l.is_some() => Some("oxygen UNKNOWN".to_owned()),
+        (Standing::Unknown, _) => None,
+        (standing, Some(by)) if by > 0.0 => Some(format!("oxygen {}", missed(standing, by, "mg/L"))),
+        (standing, _) => Some(format!("oxygen {}", standing.word())),
+    };
+    [warm, aired].into_iter().flatten().collect::<Vec<_>>().join(", ")
+}
+
+fn standings(site: &Site, mix: &Mix, system: System) -> String {
+    if mix.targets.is_empty() {
+        return labelled("Target", "none is valid on this date") + "\n";
+    }
+    let mut out = String::new();
+    for s in &mix.targets {
+        let rule = &site.targets[s.target];
+        let governs = if s.governs && mix.targets.len() > 1 { ": governs" } else { "" };
+        let statistic = rule.statistic.name().replace('_', " ");
+        let (name, point) = (harmless(&rule.name), harmless(&rule.point));
+        out.push_str(&labelled(
+            "Target",
+            &format!("{name} at the {point} ({statistic}, steady release){governs}"),
+        ));
+        let source = rule.source.as_deref().map_or_else(|| "no source given".to_owned(), harmless);
+        out.push_str(&labelled("", &format!("{} [{source}]", range(rule, system))));
+        let percent = |share: Option<f64>| share.map(|s| format!("{:.0} %", 100.0 * s));
+        let cases = match (percent(s.share_inside_both), percent(s.share_inside)) {
+            (Some(both), _) => format!("{both} of perturbed cases inside"),
+            (None, Some(warm)) => format!("{warm} of perturbed cases inside in temperature"),
+            (None, None) => "no share known".to_owned(),
+        };
+        out.push_str(&labelled("", &format!("{}; {cases}", standing_words(s, rule, system))));
+    }
+    out.push('\n');
+    out
+}
+
+fn levels(site: &Site, drawn: &[Drawn], system: System) -> String {
+    let mut out = format!(
+        "{:<14} {:>11} {:>10}  {:<22} {:>7}  oxygen\n",
+        "Level", "elevation", "flow", "draws from", "water"
+    );
+    for d in drawn.iter().rev() {
+        let names: Vec<String> = d.level.outlets.iter().map(|&i| harmless(&site.outlets[i].name)).collect();
+        let zone = d.zone.map_or_else(|| "nothing".to_owned(), |z| between(&z.lower, &z.upper, system));
+        let _ = writeln!(
+            out,
+            "{} {:>11} {:>10}  {zone:<22} {:>7}  {}",
+            fitted(&names.join(" "), 14),
+            length(d.level.sink.centre_m, system),
+            flow(d.level.sink.flow_m3s, system),
+            d.draw.map_or_else(|| "-".to_owned(), |w| temperature(w.temperature_c, system)),
+            d.draw.map_or_else(|| "-".to_owned(), |w| oxygen(w.oxygen_mg_l)),
+        );
+    }
+    out
+}
+
+fn between(lower: &Side, upper: &Side, system: System) -> String {
+    let unit = system.unit(Dimension::Length);
+    match (lower.end, upper.end) {
+        (End::Free, End::Free) => {
+            format!("{} to {}", figure(lower.limit_m, unit, 1), length(upper.limit_m, system))
+        }
+        (End::Free, End::Boundary) => format!("{} to surface", length(lower.limit_m, system)),
+        (End::Boundary, End::Free) => format!("bed to {}", length(upper.limit_m, system)),
+        (End::Boundary, End::Boundary) => "bed to surface".to_owned(),
+    }
+}

@@ -1,0 +1,184 @@
+//! Answers as text a person can read aloud.
+
+mod mix;
+mod pool;
+
+use std::fmt::Write as _;
+
+use unicode_width::UnicodeWidthStr;
+
+use crate::problem::{Problem, Weight, harmless};
+use crate::tasks::{Context, Freshness, MixAnswer, PoolAnswer};
+use crate::units::{Dimension, System, show};
+
+use super::column::{drawn_column, fitted};
+use super::sentence::{caution, flags_of};
+
+/// Width text is wrapped at.
+const WIDTH: usize = 80;
+/// Width of the margin that holds `Set`, `Release`, `Target`.
+const MARGIN: usize = 9;
+/// Flags shown before the rest is counted.
+const FLAGS: usize = 12;
+
+/// The answer of `pool`.
+pub fn pool(context: &Context, answer: &PoolAnswer) -> String {
+    let mut out = head(context);
+    out.push_str(&pool::layers(context, answer));
+    out.push_str(&pool::outlets(context, answer));
+    out.push_str(&drawn_column(context.site(), &context.profile, &[], context.system));
+    out.push('\n');
+    out.push_str(&cast_flags(context, &answer.against_previous));
+    out.push_str(&wrapped(caution(), 0));
+    out
+}
+
+/// The answer of `mix`.
+pub fn mix(context: &Context, answer: &MixAnswer) -> String {
+    let mut out = head(context);
+    out.push_str(&mix::body(context, answer));
+    out.push_str(&cast_flags(context, &[]));
+    out.push_str(&mix::not_checked(answer));
+    out.push_str(&wrapped(caution(), 0));
+    out
+}
+
+/// The answers of `pool` and of `mix` for the setting now, on one page.
+pub fn both(context: &Context, pool: &PoolAnswer, mix: &MixAnswer) -> String {
+    let mut out = head(context);
+    out.push_str(&pool::layers(context, pool));
+    out.push_str(&mix::body(context, mix));
+    out.push_str(&cast_flags(context, &pool.against_previous));
+    out.push_str(&mix::not_checked(mix));
+    out.push_str(&wrapped(caution(), 0));
+    out
+}
+
+/// The answer of `check`: every problem, flag and note, and a closing line.
+pub fn check(named: &str, problems: &[Problem], system: System) -> String {
+    let mut out = String::new();
+    for p in problems {
+        let _ = writeln!(out, "{}", p.text(system));
+    }
+    let count = |weight: Weight| problems.iter().filter(|p| p.weight == weight).count();
+    let _ = writeln!(
+        out,
+        "{}: {} refused, {} flagged, {} noted",
+        harmless(named),
+        count(Weight::Refused),
+        count(Weight::Flag),
+        count(Weight::Note)
+    );
+    out
+}
+
+/// The head of every answer: site, pool, datum, cast, age, date, fingerprint.
+fn head(context: &Context) -> String {
+    let site = context.site();
+    let profile = &context.profile;
+    let mut out = harmless(&site.name);
+    if let Some(river) = &site.river {
+        let _ = write!(out, " on the {}", harmless(river));
+    }
+    if site.demonstration {
+        out.push_str(if context.folder.in_memory() {
+            " [demonstration, held in memory]"
+        } else {
+            " [demonstration]"
+        });
+    }
+    let _ =
+        writeln!(out, "\nPool  {} ({})", length(profile.pool_m, context.system), harmless(site.datum.name()));
+    let taken = profile.taken.map_or_else(
+        || "at an unknown time".to_owned(),
+        |t| t.with_timezone(&site.offset).format("%Y-%m-%d %H:%M %:z").to_string(),
+    );
+    let age = context.age_days.map_or_else(String::new, |d| format!(", {d:.0} days old"));
+    let badge = Freshness::of(site, context.age_days).word();
+    let _ = writeln!(out, "Cast  {taken}{age}: {badge}");
+    let _ = writeln!(out, "For   {} ({})", context.on.format("%Y-%m-%d %H:%M %:z"), context.on_from.words());
+    let _ = writeln!(out, "From  inputs {}, gatemix {}\n", context.fingerprint, env!("CARGO_PKG_VERSION"));
+    out
+}
+
+fn cast_flags(context: &Context, more: &[Problem]) -> String {
+    let mut flags = flags_of(&context.profile.flags);
+    flags.extend(more.iter());
+    list("The cast", &flags, true, context.system)
+}
+
+/// Flags (`!`) and notes (`-`) under a heading, each with its line, the rest counted.
+fn list(heading: &str, problems: &[&Problem], rows: bool, system: System) -> String {
+    if problems.is_empty() {
+        return String::new();
+    }
+    let mut out = format!("{heading}\n");
+    for p in problems.iter().take(FLAGS) {
+        let mark = if p.weight == Weight::Note { '-' } else { '!' };
+        let row = p.place.line.filter(|_| rows).map_or_else(String::new, |l| format!(" (line {l})"));
+        out.push_str(&wrapped(&format!("  {mark} {}{row}: {}", p.kind, p.sentence(system)), 4));
+    }
+    if problems.len() > FLAGS {
+        let _ = writeln!(out, "  {} more; `gatemix check` lists all", problems.len() - FLAGS);
+    }
+    out.push('\n');
+    out
+}
+
+/// A word in the left margin and its text beside it, wrapped.
+fn labelled(label: &str, text: &str) -> String {
+    let body = wrapped(&format!("{:MARGIN$}{text}", ""), MARGIN);
+    // the margin of the first line is blank and as wide as the label's field
+    format!("{label:<MARGIN$}{}", body.get(MARGIN..).unwrap_or_default())
+}
+
+/// Words wrapped at 80 cells, later lines indented.
+fn wrapped(text: &str, indent: usize) -> String {
+    let lead = text.len() - text.trim_start().len();
+    let mut out = " ".repeat(lead);
+    let mut used = lead;
+    let mut first = true;
+    for word in text.split_whitespace() {
+        let wide = word.width();
+        if !first && used + 1 + wide > WIDTH {
+            out.push('\n');
+            out.push_str(&" ".repeat(indent));
+            used = indent;
+        } else if !first {
+            out.push(' ');
+            used += 1;
+        }
+        out.push_str(word);
+        used += wide;
+        first = false;
+    }
+    out.push('\n');
+    out
+}
+
+fn flow(m3s: f64, system: System) -> String {
+    show(m3s, Dimension::Flow, system, u8::from(system != System::Us))
+}
+
+fn length(m: f64, system: System) -> String {
+    show(m, Dimension::Length, system, 1)
+}
+
+fn temperature(c: f64, system: System) -> String {
+    show(c, Dimension::Temperature, system, 1)
+}
+
+fn step(c: f64, system: System) -> String {
+    show(c, Dimension::TemperatureDifference, system, 1)
+}
+
+fn oxygen(mg_l: Option<f64>) -> String {
+    mg_l.map_or_else(|| "unknown".to_owned(), |o| format!("{o:.1} mg/L"))
+}
+
+fn volume(m3: f64, system: System) -> String {
+    match system {
+        System::Us => show(m3, Dimension::Volume, system, 0),
+        System::Si => format!("{:.2} hm3", m3 / 1e6),
+    }
+}

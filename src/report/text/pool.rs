@@ -1,0 +1,107 @@
+//! The layers of the pool and the outlets in it.
+
+use std::fmt::Write as _;
+
+use crate::problem::harmless;
+use crate::tasks::{Context, PoolAnswer};
+use crate::units::System;
+
+use super::{fitted, length, temperature, volume};
+
+pub(super) fn layers(context: &Context, answer: &PoolAnswer) -> String {
+    let system = context.system;
+    let l = &answer.layering;
+    let mut out = format!(
+        "Surface {}, bed {}, mean {}; stored {}\n",
+        temperature(l.surface_c, system),
+        temperature(l.bed_c, system),
+        temperature(l.mean_c, system),
+        volume(l.volume_m3, system)
+    );
+    match &l.thermocline {
+        None => out.push_str("No thermocline: top and bottom differ by less than about 1 C (1.8 F)\n"),
+        Some(t) => {
+            let per = match system {
+                System::Us => format!("{:.1} F per ft", t.gradient_c_m * 1.8 * 0.3048),
+                System::Si => format!("{:.1} C per m", t.gradient_c_m),
+            };
+            let _ = writeln!(
+                out,
+                "Thermocline at {}, {} below the surface: {per}",
+                length(t.elevation_m, system),
+                length(context.profile.pool_m - t.elevation_m, system)
+            );
+        }
+    }
+    let _ = writeln!(
+        out,
+        "Mixed layer down to {}; Schmidt stability {:.0} J/m2",
+        length(l.mixed_base_m, system),
+        l.schmidt_j_m2
+    );
+    match l.oxygen_min {
+        None => out.push_str("No oxygen measured\n"),
+        Some(least) => {
+            let _ = writeln!(
+                out,
+                "Lowest oxygen {:.1} mg/L at {}",
+                least.oxygen_mg_l,
+                length(least.elevation_m, system)
+            );
+        }
+    }
+    out.push_str(&cold_water(answer, system));
+    out.push('\n');
+    out
+}
+
+fn cold_water(answer: &PoolAnswer, system: System) -> String {
+    let mut out = String::new();
+    if answer.cold.is_empty() {
+        return out;
+    }
+    let _ = writeln!(out, "\n{:<14} {:>18} {:>18} {:>18}", "Cold water", "usable", "unreachable", "total");
+    for c in &answer.cold {
+        let of = |v: Option<f64>| v.map_or_else(|| "no outlet usable".to_owned(), |v| volume(v, system));
+        let _ = writeln!(
+            out,
+            "{:<14} {:>18} {:>18} {:>18}",
+            format!("below {}", temperature(c.threshold_c, system)),
+            of(c.usable_m3),
+            of(c.usable_m3.map(|u| c.total_m3 - u)),
+            volume(c.total_m3, system)
+        );
+    }
+    if let Some(reach) = answer.reach_m {
+        let _ = writeln!(
+            out,
+            "usable: above {}, the lowest that the deepest usable outlet draws from",
+            length(reach, system)
+        );
+    }
+    out
+}
+
+pub(super) fn outlets(context: &Context, answer: &PoolAnswer) -> String {
+    let (site, system) = (context.site(), context.system);
+    let mut out = format!("{:<14} {:>12} {:>16}\n", "Outlet", "elevation", "water above it");
+    for s in &answer.outlets {
+        let o = &site.outlets[s.outlet];
+        let asked = || length(o.min_submergence_m.unwrap_or(0.0), system);
+        let state = match (s.wet, s.kept) {
+            (false, _) => "DRY".to_owned(),
+            (true, Some(false)) => format!("SHORT, {} asked for", asked()),
+            (true, Some(true)) => format!("keeps {}", asked()),
+            (true, None) => "submergence not checked".to_owned(),
+        };
+        let _ = writeln!(
+            out,
+            "{} {:>12} {:>16}  {state}",
+            fitted(&harmless(&o.name), 14),
+            length(o.centre_m, system),
+            length(s.submergence_m, system)
+        );
+    }
+    out.push('\n');
+    out
+}

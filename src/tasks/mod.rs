@@ -1,0 +1,212 @@
+//! One function per task. The command line and the screens call the same ones, so both show the same number.
+//!
+//! A task takes what the user asked as text where its meaning depends on the site (its units, its gates), and
+//! the clock from its caller.
+
+use chrono::{DateTime, FixedOffset, Utc};
+
+use crate::files::cast::{TIME_CURE, parse_time};
+use crate::files::folder::{self, Folder, demonstrations};
+use crate::problem::Problem;
+use crate::profile::Profile;
+use crate::site::Site;
+use crate::units::{Dimension, System};
+
+mod mix;
+mod pool;
+
+pub use mix::{MixAnswer, mix, now_setting};
+pub use pool::{ColdWater, OutletState, PoolAnswer, pool};
+
+/// Why a task gave no answer.
+#[derive(Debug, Clone, PartialEq)]
+pub enum Failure {
+    /// The command line cannot be understood.
+    Usage(String),
+    /// It can, but the files, or the files with these numbers, give no answer; with the units to say it in.
+    Refused(Vec<Problem>, System),
+}
+
+/// The answer of `check`: everything said of a site folder, and the units to say it in.
+pub fn check(named: &str) -> (Vec<Problem>, System) {
+    folder::check(named)
+}
+
+/// What every task is asked with.
+#[derive(Debug, Clone, Default, PartialEq)]
+pub struct Asked {
+    /// Site folder, or the name of a demonstration site; the first demonstration site when absent.
+    pub site: Option<String>,
+    /// Cast: a file, or `-`.
+    pub profile: Option<String>,
+    /// When that cast was taken.
+    pub taken: Option<String>,
+    /// Pool elevation, with a unit or in the folder's.
+    pub pool: Option<String>,
+    /// Decision date, or `now`.
+    pub on: Option<String>,
+    /// Units shown; the folder's when absent.
+    pub units: Option<System>,
+}
+
+/// Where the decision date came from.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum OnFrom {
+    /// The user named it.
+    Asked,
+    /// The clock.
+    Clock,
+    /// The newest cast of a demonstration site.
+    NewestCast,
+}
+
+impl OnFrom {
+    /// As every output says it.
+    pub fn words(self) -> &'static str {
+        match self {
+            Self::Asked => "as asked",
+            Self::Clock => "the clock",
+            Self::NewestCast => "the newest cast's time: demonstration",
+        }
+    }
+}
+
+/// A site with the cast and the date a task works on.
+#[derive(Debug, Clone)]
+pub struct Context {
+    /// The opened folder.
+    pub folder: Folder,
+    /// The cast held against the site.
+    pub profile: Profile,
+    /// Decision date.
+    pub on: DateTime<FixedOffset>,
+    /// Where it came from.
+    pub on_from: OnFrom,
+    /// Age of the cast, days; negative when taken after the decision date.
+    pub age_days: Option<f64>,
+    /// Fingerprint of the inputs.
+    pub fingerprint: String,
+    /// Units shown.
+    pub system: System,
+}
+
+impl Context {
+    /// The checked site.
+    pub fn site(&self) -> &Site {
+        &self.folder.site
+    }
+}
+
+/// Opens what a task works on. `clock` is the time of day of the machine.
+///
+/// # Errors
+/// Every problem of the files, or a word of the command line that cannot be understood.
+pub fn open(asked: &Asked, clock: DateTime<Utc>) -> Result<Context, Failure> {
+    let folder = open_folder(asked)?;
+    let site = &folder.site;
+    let system = asked.units.unwrap_or_else(|| site.units.system());
+    let pool_m = match &asked.pool {
+        None => None,
+        Some(text) => Some(
+            site.units
+                .parse(text, Dimension::Length)
+                .map_err(|error| Failure::Usage(format!("--pool {text}: {error}")))?,
+        ),
+    };
+    if let Some(taken) = &asked.taken {
+        parse_time(taken, site.offset)
+            .map_err(|words| Failure::Usage(format!("--taken: {words}; {TIME_CURE}")))?;
+    }
+    let read = match &asked.profile {
+        Some(named) => folder.cast(named, asked.taken.as_deref(), pool_m),
+        None => folder.newest(pool_m),
+    }
+    .map_err(|problems| Failure::Refused(problems, system))?;
+    let mut profile = read.profile;
+    let (on, on_from) = decision_date(asked, &folder, clock)?;
+    let age_days = profile.age_days(on);
+    age_flags(site, &mut profile, age_days);
+    let fingerprint = folder.fingerprint(&[&read.source]);
+    Ok(Context { folder, profile, on, on_from, age_days, fingerprint, system })
+}
+
+fn open_folder(asked: &Asked) -> Result<Folder, Failure> {
+    let first = || demonstrations().first().copied().unwrap_or_default();
+    let opened = asked.site.as_deref().map_or_else(|| Folder::demonstration(first()), Folder::open);
+    opened.map_err(|refused| Failure::Refused(refused.problems, asked.units.unwrap_or(refused.system)))
+}
+
+fn decision_date(
+    asked: &Asked,
+    folder: &Folder,
+    clock: DateTime<Utc>,
+) -> Result<(DateTime<FixedOffset>, OnFrom), Failure> {
+    let site = &folder.site;
+    let now = clock.with_timezone(&site.offset);
+    match asked.on.as_deref() {
+        Some("now") => Ok((now, OnFrom::Clock)),
+        Some(text) => parse_time(text, site.offset)
+            .map(|time| (time, OnFrom::Asked))
+            .map_err(|words| Failure::Usage(format!("--on: {words}; {TIME_CURE}, or `now`"))),
+        None => match folder.newest_time().filter(|_| site.demonstration) {
+            Some(taken) => Ok((taken, OnFrom::NewestCast)),
+            None => Ok((now, OnFrom::Clock)),
+        },
+    }
+}
+
+/// Flags a cast that is old, or that lies after the decision date.
+fn age_flags(site: &Site, profile: &mut Profile, age_days: Option<f64>) {
+    let Some(age) = age_days else { return };
+    let flag = if age < 0.0 {
+        Problem::flag(
+            "later",
+            format!("the cast was taken {:.1} days after the decision date", -age),
+            "check --on and `# taken`",
+        )
+    } else if age > site.checks.stale_days {
+        Problem::flag(
+            "stale",
+            format!("the cast is {age:.0} days old (stale after {:.0})", site.checks.stale_days),
+            "cast again: layers move within a week",
+        )
+    } else {
+        return;
+    };
+    profile.flags.push(flag.in_file(&profile.file));
+}
+
+/// How fresh a cast is, as a badge.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Freshness {
+    /// Young enough.
+    Fresh,
+    /// Worth another cast soon.
+    Ageing,
+    /// Too old to trust.
+    Stale,
+    /// Its time is not known.
+    Unknown,
+}
+
+impl Freshness {
+    /// The badge of a cast of some age at a site.
+    pub fn of(site: &Site, age_days: Option<f64>) -> Self {
+        match age_days {
+            None => Self::Unknown,
+            Some(age) if age > site.checks.stale_days => Self::Stale,
+            Some(age) if age > site.checks.ageing_days => Self::Ageing,
+            Some(_) => Self::Fresh,
+        }
+    }
+
+    /// The word of the badge.
+    pub fn word(self) -> &'static str {
+        match self {
+            Self::Fresh => "fresh",
+            Self::Ageing => "ageing",
+            Self::Stale => "stale",
+            Self::Unknown => "age unknown",
+        }
+    }
+}

@@ -1,0 +1,27 @@
+//! What the readers do with input that is wrong, hostile or merely odd.
+
+#![expect(clippy::unwrap_used, reason = "helpers of tests stand outside test functions")]
+
+#[path = "bad_input/atomic.rs"]
+mod atomic;
+#[path = "bad_input/cursor.rs"]
+mod cursor;
+#[path = "bad_input/docs.rs"]
+mod docs;
+#[path = "bad_input/laws.rs"]
+mod laws;
+#[path = "bad_input/mutated.rs"]
+mod mutated;
+#[path = "bad_input/table.rs"]
+mod table;
+#[path = "bad_input/text.rs"]
+mod text;
+#[path = "bad_input/yaml.rs"]
+mod yaml;
+
+use gatemix::problem::Problem;
+
+/// Every problem as the user reads it.
+fn said(problems: &[Problem]) -> Vec<String> {
+    problems.iter().map(ToString::to_string).collect()
+}

@@ -1,0 +1,6 @@
+//! The makers of the demonstration sites' casts.
+
+pub(crate) mod ashlar;
+pub(crate) mod basin;
+pub(crate) mod column;
+pub(crate) mod water;

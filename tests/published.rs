@@ -1,4 +1,0 @@
-//! Published values.
-
-#[path = "published/withdrawal.rs"]
-mod withdrawal;
