@@ -244,6 +244,7 @@ fn failed(stop: &Stop) -> (String, End) {
 fn answer(cli: &Cli, clock: DateTime<Utc>) -> Result<(Vec<u8>, End), Stop> {
     match &cli.command {
         None => {
+            mistyped(cli.folder.as_deref())?;
             let asked = Asked { site: cli.folder.clone(), ..Asked::default() };
             let context = tasks::open(&asked, clock)?;
             let shown = text::both(&context, &tasks::pool(&context), &tasks::mix(&context, &[])?);
@@ -288,6 +289,25 @@ fn answer(cli: &Cli, clock: DateTime<Utc>) -> Result<(Vec<u8>, End), Stop> {
             }
         }
     }
+}
+
+/// A lone word that is neither a path nor a demonstration site was meant as a command.
+fn mistyped(word: Option<&str>) -> Result<(), Failure> {
+    let Some(word) = word else { return Ok(()) };
+    let names = demonstrations();
+    if word.contains(std::path::MAIN_SEPARATOR) || Path::new(word).exists() || names.contains(&word) {
+        return Ok(());
+    }
+    let commands: Vec<String> = Cli::command()
+        .get_subcommands()
+        .filter(|c| !c.is_hide_set())
+        .map(|c| c.get_name().to_owned())
+        .collect();
+    Err(Failure::Usage(format!(
+        "`{word}` is no folder, no demonstration site ({}) and no command ({})",
+        names.join(", "),
+        commands.join(", ")
+    )))
 }
 
 /// Writes the demonstration sites below a folder. A file that is there with other contents is left alone and stops

@@ -250,6 +250,8 @@ impl<'d> Map<'d> {
         let asked = self.asked.borrow();
         for (key, _) in self.entries.iter().filter(|(key, _)| !asked.contains(&key.as_str())) {
             let cure = match nearest(key, &asked) {
+                // `{ altitude: 4,1 }` is for YAML an altitude of 4 and a key `1`
+                _ if key.parse::<f64>().is_ok() => "write decimals with a point, as 12.5".to_owned(),
                 Some(known) => format!("did you mean {known}?"),
                 None if asked.is_empty() => "leave it out; no key is allowed here".to_owned(),
                 None => format!("leave it out; allowed here: {}", asked.join(", ")),

@@ -127,7 +127,7 @@ fn known_keys() -> BTreeMap<String, bool> {
             problems.iter().find(move |p| p.kind == kind && p.place.path.as_deref() == Some(path.as_str()))
         };
         let Some(unknown) = at("unknown-key", UNKNOWN) else { continue };
-        let (_, keys) = unknown.cure.split_once("allowed here: ").expect(&unknown.cure);
+        let (_, keys) = unknown.cure.split_once("allowed here: ").unwrap();
         for key in keys.split(", ") {
             let path = below(&level, key);
             levels.extend([path.clone(), format!("{path}[]")]);

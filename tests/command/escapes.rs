@@ -13,6 +13,8 @@ fn bytes(arguments: &[&str]) -> Vec<u8> {
 /// Neither escapes nor other controls, in one or in two bytes.
 fn harmless(arguments: &[&str], shows: &str) {
     let text = String::from_utf8(bytes(arguments)).unwrap();
+    // the program's own weight of a word
+    let text = text.replace("\u{1b}[1m", "").replace("\u{1b}[0m", "");
     let raw: Vec<char> = text.chars().filter(|c| c.is_control() && *c != '\n').collect();
     assert!(raw.is_empty(), "{raw:?} in {arguments:?}:\n{text}");
     assert!(text.contains(shows), "no `{shows}` in {arguments:?}:\n{text}");
@@ -23,7 +25,7 @@ fn hostile() -> Folder {
     let evil = r#""\e[31m\u202e\u009b2JEvil\a""#;
     let site = with(SITE, "name: Test Dam (invented)", &format!("name: {evil}\nriver: {evil}"));
     let site = with(&site, "datum: local", &format!("datum: {evil}"));
-    let site = site.replace("name: N1", r#"name: "N\e[1m1""#).replace("{ N1: 30", r#"{ "N\e[1m1": 30"#);
+    let site = site.replace("name: N1", r#"name: "N\e[7m1""#).replace("{ N1: 30", r#"{ "N\e[7m1": 30"#);
     let site = with(&site, "name: holding", &format!("name: {evil}"));
     let site = with(&site, "\"example only\"", evil);
     let cast = with(CAST, "oxygen_mg_l", "oxygen_mg_l,\u{1b}[2Jturbidity\u{9b}1m");

@@ -29,9 +29,15 @@ fn is_usual(answer: &Value, what: &str) {
 fn close(a: &Value, b: &Value, what: &str) {
     match (a, b) {
         (Value::Object(a), Value::Object(b)) => {
-            a.iter().for_each(|(k, v)| close(v, &b[k], &format!("{what}: {k}")))
+            assert!(a.keys().eq(b.keys()), "{what}");
+            for (key, value) in a {
+                close(value, &b[key], &format!("{what}: {key}"));
+            }
         }
-        (Value::Array(a), Value::Array(b)) => a.iter().zip(b).for_each(|(a, b)| close(a, b, what)),
+        (Value::Array(a), Value::Array(b)) => {
+            assert_eq!(a.len(), b.len(), "{what}");
+            a.iter().zip(b).for_each(|(a, b)| close(a, b, what));
+        }
         _ => match (a.as_f64(), b.as_f64()) {
             (Some(a), Some(b)) => assert!((a - b).abs() <= 1e-9 * a.abs().max(1.0), "{what}: {a} and {b}"),
             _ => assert_eq!(a, b, "{what}"),
@@ -96,7 +102,7 @@ fn scenario_a_mapped_and_listed_export_holds_the_same_water() {
 fn scenario_elevations_and_feet_hold_the_same_water() {
     let rows = |f: &dyn Fn(f64, f64, f64) -> String| -> String {
         let cells = |l: &str| l.split(',').map(|c| c.parse().unwrap()).collect::<Vec<f64>>();
-        CAST.lines().skip(3).map(|l| cells(l)).map(|c| f(c[0], c[1], c[2])).collect()
+        CAST.lines().skip(3).map(cells).map(|c| f(c[0], c[1], c[2])).collect()
     };
     let head = "# taken: 2025-07-14T10:30\n# pool: 60\n";
     for (columns, rows) in [
@@ -123,9 +129,9 @@ fn published_percent_of_saturation_becomes_milligrams() {
 /// Raw conductivity, converted to 25 C by hand, must weigh as much as specific conductance does.
 #[test]
 fn scenario_raw_conductivity_is_taken_to_25_c() {
-    let rows: Vec<(f64, f64, f64)> = vec![(0.5, 20.0, 300.0), (20.0, 12.0, 500.0), (58.0, 6.0, 900.0)];
+    let rows = [(0.5, 20.0, 300.0), (20.0, 12.0, 500.0), (58.0, 6.0, 900.0)];
     let cast = |column: &str, value: &dyn Fn(f64, f64) -> f64| {
-        let lines: String = rows.iter().map(|(d, t, c)| format!("{d},{t},{}\n", value(*t, *c))).collect();
+        let lines: String = rows.map(|(d, t, c)| format!("{d},{t},{}\n", value(t, c))).concat();
         format!("# taken: 2025-07-14T10:30\n# pool: 60\ndepth_m,temperature_C,{column}\n{lines}")
     };
     let raw = pool_of(SITE, cast("conductivity_us_cm", &|_, c| c).as_bytes());
