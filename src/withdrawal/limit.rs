@@ -170,9 +170,10 @@ fn first_at_least(target: f64, count: usize, value: impl Fn(usize) -> f64) -> Op
     there.map(|there| (low, before, there))
 }
 
-/// The step from an excess smaller than this is the last: it leaves a small part of it.
+/// The step from an excess smaller than this is the last (choice): it leaves a small part of it.
 const LAST_EXCESS: f64 = 1e-7;
-/// Elevations are not told apart more finely, m: where density barely differs its round-off hides the excess.
+/// Elevations are not told apart more finely, m (choice): where density barely differs its round-off hides the
+/// excess.
 const LEAST_STEP_M: f64 = 1e-11;
 /// Most steps of the root search; bisection alone would need about 45 from 10 km.
 const STEPS: usize = 100;

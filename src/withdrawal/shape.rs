@@ -12,7 +12,7 @@ use super::zone::{Side, Zone};
 /// here to twice this they come in by degrees (choice): a bare switch would be a jump in flow, since the
 /// peak moves with it.
 pub const NOISE_KG_M3: f64 = 1e-3;
-/// A side thinner than this has no shape, m.
+/// A side thinner than this has no shape, m (choice).
 const THIN_M: f64 = 1e-9;
 /// A draw takes oxygen as missing when more of it than this comes from where no reading reaches (choice).
 const MISSING_SHARE: f64 = 0.05;
