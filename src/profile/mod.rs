@@ -2,6 +2,7 @@
 
 mod cast;
 mod column;
+mod finder;
 mod layering;
 mod levelled;
 mod moved;
@@ -10,6 +11,7 @@ mod raw;
 mod rows;
 mod samples;
 mod slices;
+mod stretch;
 
 pub use cast::Profile;
 pub use column::{Column, OXYGEN_LOW_MG_L, Reading, Source, Widths};
@@ -22,3 +24,4 @@ pub use raw::{Raw, RawRow};
 pub use rows::{ABOVE_SURFACE_M, WATER_C};
 pub use samples::{OXYGEN_CARRY_M, OxygenSample, Sample};
 pub use slices::Slices;
+pub use stretch::Stretch;
