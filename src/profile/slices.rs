@@ -51,7 +51,8 @@ impl Slices {
         for (i, s) in stretches.iter().enumerate() {
             let height = s.z_m[1] - s.z_m[0];
             // a count of slices: at least one, and no more than a stretch of the whole depth has
-            let count = (height / (depth_m * THICKEST)).ceil().clamp(1.0, 1.0 / THICKEST + 1.0);
+            // the last digit of a converted unit must not add one
+            let count = (height / (depth_m * THICKEST) - 1e-9).ceil().clamp(1.0, 1.0 / THICKEST + 1.0);
             let step = height / count;
             let mut k = 0.0;
             while k < count {

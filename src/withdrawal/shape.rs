@@ -24,6 +24,7 @@ const GAUSS: [(f64, f64); 3] = [
     (0.0, 0.888_888_888_888_888_8),
     (0.774_596_669_241_483_4, 0.555_555_555_555_555_6),
 ];
+
 /// The flow-weighted water of a zone.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Draw {
@@ -213,8 +214,6 @@ impl HalfShape {
             if !PLAIN {
                 add(&mut lanes[3], times(flow, salt[k]));
                 add(&mut lanes[4], times(flow, suspended[k]));
-            }
-            if !PLAIN {
                 let flow = flow[0] + flow[1];
                 sums.missing += if missing[k] { flow } else { 0.0 };
                 sums.low += if low[k] { flow } else { 0.0 };
