@@ -93,10 +93,10 @@ pub struct Spread {
 }
 
 impl Perturbed {
-    /// Prepares the members' columns for a profile of some age in days (0 when unknown).
+    /// Prepares the members' columns for a profile of some age in days (0 when unknown). The layers heave as far
+    /// after a cast as before it, so a cast later than the decision counts by its distance.
     pub fn new(site: &Site, profile: &Profile, age_days: f64) -> Self {
-        let sd =
-            (site.band.heave_m + site.band.heave_m_per_day * age_days.max(0.0)).min(site.band.heave_max_m);
+        let sd = (site.band.heave_m + site.band.heave_m_per_day * age_days.abs()).min(site.band.heave_max_m);
         let knee = knee_m(profile);
         let cases = members(&site.band)
             .into_iter()
