@@ -146,12 +146,13 @@ impl Perturbed {
                     release_joined(column, &drawn, &overlaps, m.zone_factor).unwrap_or(apart)
                 };
                 let between = |a: f64, b: f64| a + m.joined * (b - a);
-                let temperature =
-                    widen(between(apart.temperature_c, joined.temperature_c), centre.temperature_c)
-                        + m.release_c;
+                let temperature = widen(
+                    between(apart.temperature_c, joined.temperature_c) + m.release_c,
+                    centre.temperature_c,
+                );
                 let oxygen = apart.oxygen_mg_l.zip(joined.oxygen_mg_l).map(|(a, b)| {
                     let value = between(a, b);
-                    (widen(value, centre.oxygen_mg_l.unwrap_or(value)) + m.release_mg_l).max(0.0)
+                    widen(value + m.release_mg_l, centre.oxygen_mg_l.unwrap_or(value)).max(0.0)
                 });
                 Some((temperature, oxygen))
             })
