@@ -11,7 +11,7 @@ use clap::{Args, CommandFactory, Parser, Subcommand, ValueEnum};
 use crate::files::atomic;
 use crate::files::folder::{demonstration_files, demonstrations};
 use crate::mix::TargetStanding;
-use crate::problem::{Problem, any_refused};
+use crate::problem::{Problem, any_refused, harmless};
 use crate::report::{json, text};
 use crate::tasks::{self, Asked, Failure};
 use crate::units::System;
@@ -187,29 +187,35 @@ pub fn run_at(
         Err(error) => {
             let end = if error.use_stderr() { End::Usage } else { End::Answered };
             let words = error.render().to_string();
-            let written = if end == End::Usage {
-                err.write_all(words.as_bytes())
-            } else {
-                out.write_all(words.as_bytes())
+            return match end {
+                End::Usage => said(&words, end, err),
+                _ => finished(words.as_bytes(), end, out, err),
             };
-            return finished(written, end);
         }
     };
     match answer(&cli, clock) {
-        Ok((bytes, end)) => finished(out.write_all(&bytes).and_then(|()| out.flush()), end),
+        Ok((bytes, end)) => finished(&bytes, end, out, err),
         Err(failure) => {
             let (words, end) = failed(&failure);
-            finished(err.write_all(words.as_bytes()), end)
+            said(&words, end, err)
         }
     }
 }
 
-/// A closed pipe is no error; anything else that stops the writing is.
-fn finished(written: std::io::Result<()>, end: End) -> ExitCode {
-    match written {
-        Err(error) if error.kind() != std::io::ErrorKind::BrokenPipe => End::Failed.into(),
+/// Writes the answer. A closed pipe is no error; anything else that stops the writing is.
+fn finished(bytes: &[u8], end: End, out: &mut dyn Write, err: &mut dyn Write) -> ExitCode {
+    match out.write_all(bytes).and_then(|()| out.flush()) {
+        Err(error) if error.kind() != std::io::ErrorKind::BrokenPipe => {
+            said(&format!("gatemix: the answer cannot be written: {error}\n"), End::Failed, err)
+        }
         _ => end.into(),
     }
+}
+
+/// Writes why there is none. Where even that cannot be written, the exit code is all that is left.
+fn said(words: &str, end: End, err: &mut dyn Write) -> ExitCode {
+    _ = err.write_all(words.as_bytes());
+    end.into()
 }
 
 /// Why there is no answer: of the command line, of the files, or of the machine.
@@ -226,9 +232,7 @@ impl From<Failure> for Stop {
 
 fn failed(stop: &Stop) -> (String, End) {
     match stop {
-        Stop::Task(Failure::Usage(words)) => {
-            (format!("gatemix: {}\n", crate::problem::harmless(words)), End::Usage)
-        }
+        Stop::Task(Failure::Usage(words)) => (format!("gatemix: {}\n", harmless(words)), End::Usage),
         Stop::Task(Failure::Refused(problems, system)) => {
             let lines: Vec<String> = problems.iter().map(|p| p.text(*system)).collect();
             (lines.join("\n") + "\n", End::Refused)
@@ -240,6 +244,7 @@ fn failed(stop: &Stop) -> (String, End) {
 fn answer(cli: &Cli, clock: DateTime<Utc>) -> Result<(Vec<u8>, End), Stop> {
     match &cli.command {
         None => {
+            mistyped(cli.folder.as_deref())?;
             let asked = Asked { site: cli.folder.clone(), ..Asked::default() };
             let context = tasks::open(&asked, clock)?;
             let shown = text::both(&context, &tasks::pool(&context), &tasks::mix(&context, &[])?);
@@ -286,6 +291,25 @@ fn answer(cli: &Cli, clock: DateTime<Utc>) -> Result<(Vec<u8>, End), Stop> {
     }
 }
 
+/// A lone word that is neither a path nor a demonstration site was meant as a command.
+fn mistyped(word: Option<&str>) -> Result<(), Failure> {
+    let Some(word) = word else { return Ok(()) };
+    let names = demonstrations();
+    if word.contains(std::path::MAIN_SEPARATOR) || Path::new(word).exists() || names.contains(&word) {
+        return Ok(());
+    }
+    let commands: Vec<String> = Cli::command()
+        .get_subcommands()
+        .filter(|c| !c.is_hide_set())
+        .map(|c| c.get_name().to_owned())
+        .collect();
+    Err(Failure::Usage(format!(
+        "`{word}` is no folder, no demonstration site ({}) and no command ({})",
+        names.join(", "),
+        commands.join(", ")
+    )))
+}
+
 /// Writes the demonstration sites below a folder. A file that is there with other contents is left alone and stops
 /// the writing before it begins, so nothing of the user's is lost.
 fn demo(folder: &Path) -> Result<String, Stop> {
@@ -316,10 +340,11 @@ fn demo(folder: &Path) -> Result<String, Stop> {
         }
         atomic::write(&target, bytes).map_err(Stop::Machine)?;
     }
+    let first = demonstrations().first().copied().unwrap_or_default();
     Ok(format!(
         "wrote {} files below {}; try: gatemix pool {}\n",
         files.len(),
-        folder.display(),
-        folder.join(demonstrations().first().copied().unwrap_or_default()).display()
+        harmless(&folder.display().to_string()),
+        harmless(&folder.join(first).display().to_string())
     ))
 }

@@ -141,13 +141,18 @@ pub fn any_refused(problems: &[Problem]) -> bool {
     problems.iter().any(|p| p.weight == Weight::Refused)
 }
 
-/// Text from a file made harmless for a terminal: control characters (escape codes, line breaks, the
-/// C1 range, the marks that turn writing direction round) become a visible `\u{1b}`; the rest stays.
+/// Whether a terminal may obey a character rather than show it: control characters (escape codes, line breaks,
+/// the C1 range) and the marks that turn writing direction round.
+pub fn is_harmful(c: char) -> bool {
+    let turns = matches!(c, '\u{200e}' | '\u{200f}' | '\u{202a}'..='\u{202e}' | '\u{2066}'..='\u{2069}');
+    c.is_control() || turns || c == '\u{feff}'
+}
+
+/// Text from a file made harmless for a terminal: what it may obey becomes a visible `\u{1b}`; the rest stays.
 pub fn harmless(text: &str) -> String {
     let mut out = String::with_capacity(text.len());
     for c in text.chars() {
-        let turns = matches!(c, '\u{200e}' | '\u{200f}' | '\u{202a}'..='\u{202e}' | '\u{2066}'..='\u{2069}');
-        if c.is_control() || turns || c == '\u{feff}' {
+        if is_harmful(c) {
             out.extend(c.escape_unicode());
         } else {
             out.push(c);

@@ -6,8 +6,12 @@
 mod atomic;
 #[path = "bad_input/cursor.rs"]
 mod cursor;
+#[path = "bad_input/docs.rs"]
+mod docs;
 #[path = "bad_input/laws.rs"]
 mod laws;
+#[path = "bad_input/mutated.rs"]
+mod mutated;
 #[path = "bad_input/table.rs"]
 mod table;
 #[path = "bad_input/text.rs"]

@@ -5,7 +5,7 @@ use chrono::{DateTime, FixedOffset, NaiveDate, NaiveDateTime, NaiveTime};
 use crate::problem::Problem;
 use crate::profile::{Raw, RawRow};
 use crate::site::Site;
-use crate::units::{Datum, Dimension, Unit};
+use crate::units::{Datum, Dimension, Unit, say};
 
 use super::table::Table;
 use super::text::Source;
@@ -164,25 +164,39 @@ fn read(source: &Source, site: &Site, told: &Told, problems: &mut Vec<Problem>) 
                 .on_line(table.header_line),
         );
     }
-    let (rows, absent) = rows(&table, &columns, problems);
-    if let Some((count, line)) = absent {
-        problems.push(
-            Problem::note("no-reading", format!("{count} cell(s) such as -999 read as no reading"))
-                .on_line(line),
-        );
-    }
-    let meta = meta(&table, site, problems);
-    let taken = match told.taken.as_deref() {
-        Some(text) => match parse_time(text, site.offset) {
-            Ok(time) => Some(time),
-            Err(words) => {
-                problems.push(Problem::refused("time", words, TIME_CURE));
-                None
-            }
-        },
-        None => meta.0,
+    let rows = rows(&table, &columns, problems);
+    let (own_taken, own_pool_m) = meta(&table, site, problems);
+    let told_taken = told.taken.as_deref().and_then(|text| match parse_time(text, site.offset) {
+        Ok(time) => Some(time),
+        Err(words) => {
+            problems.push(Problem::refused("time", words, TIME_CURE));
+            None
+        }
+    });
+    let mut otherwise = |words: String| {
+        let cure = "keep the right one in the file, and leave it out of --taken and of `casts` in site.yaml";
+        problems.push(Problem::flag("told-otherwise", words, cure));
     };
-    Some(Raw { file: source.name.clone(), taken, pool_m: told.pool_m.or(meta.1), rows })
+    if let (Some(own), Some(told)) = (own_taken, told_taken)
+        && own != told
+    {
+        otherwise(format!("the cast says it was taken {own}; told otherwise, {told} is used"));
+    }
+    if let (Some(own), Some(told)) = (own_pool_m, told.pool_m)
+        && (own - told).abs() > 1e-9
+    {
+        otherwise(format!(
+            "the cast says the pool stood at {}; told otherwise, {} is used",
+            say::m(own, 2),
+            say::m(told, 2)
+        ));
+    }
+    Some(Raw {
+        file: source.name.clone(),
+        taken: told_taken.or(own_taken),
+        pool_m: told.pool_m.or(own_pool_m),
+        rows,
+    })
 }
 
 fn no_header(source: &Source, site: &Site) -> Problem {
@@ -243,38 +257,54 @@ fn twice(table: &Table, columns: &[Option<Column>], problems: &mut Vec<Problem>)
     }
 }
 
-fn rows(
-    table: &Table,
-    columns: &[Option<Column>],
-    problems: &mut Vec<Problem>,
-) -> (Vec<RawRow>, Option<(usize, usize)>) {
+/// The rows in the order of the file, and what is to be said of them: cells that cannot be read, cells that hold
+/// no reading, readings that hang nowhere.
+fn rows(table: &Table, columns: &[Option<Column>], problems: &mut Vec<Problem>) -> Vec<RawRow> {
     let mut rows = Vec::with_capacity(table.len());
-    let mut absent: Option<(usize, usize)> = None;
+    let (mut absent, mut adrift) = (Vec::new(), Vec::new());
     for r in 0..table.len() {
         let line = table.line(r).unwrap_or(0);
         let mut row = RawRow { line, ..RawRow::default() };
         for (c, column) in columns.iter().enumerate() {
             let Some(column) = column else { continue };
             match table.number(r, c) {
-                Ok(Some(value)) if SENTINELS.iter().any(|s| (s - value).abs() < 1e-9) => {
-                    let first = absent.get_or_insert((0, line));
-                    first.0 += 1;
-                }
+                Ok(Some(value)) if SENTINELS.iter().any(|s| (s - value).abs() < 1e-9) => absent.push(line),
                 Ok(Some(value)) => column.put(&mut row, value),
                 Ok(None) => {}
                 Err(problem) => problems.push(problem),
             }
         }
+        let placed = row.depth_m.is_some() || row.elevation_m.is_some();
+        if !placed && row != (RawRow { line, ..RawRow::default() }) {
+            adrift.push(line);
+        }
         rows.push(row);
     }
-    (rows, absent)
+    if let Some(first) = absent.first() {
+        let words = format!("{} cell(s) such as -999 read as no reading", absent.len());
+        problems.push(Problem::note("no-reading", words).on_line(*first));
+    }
+    if let Some(first) = adrift.first() {
+        let words = format!("{} row(s) have readings but no depth or elevation; left out", adrift.len());
+        problems.push(Problem::flag("no-place", words, "give their depth").on_line(*first));
+    }
+    rows
 }
 
 type Meta = (Option<DateTime<FixedOffset>>, Option<f64>);
 
 fn meta(table: &Table, site: &Site, problems: &mut Vec<Problem>) -> Meta {
     let (mut taken, mut pool) = (None, None);
+    let mut said: Vec<(String, &str, usize)> = Vec::new();
     for (key, value, line) in table.meta() {
+        if !["taken", "pool", "datum"].contains(&key.as_str()) {
+            continue;
+        }
+        if let Some((_, _, first)) = said.iter().find(|(k, v, _)| *k == key && *v != value) {
+            let words = format!("`# {key}` says another thing than on line {first}");
+            problems.push(Problem::refused("said-twice", words, "keep the right one").on_line(line));
+        }
+        said.push((key.clone(), value, line));
         match key.as_str() {
             "taken" => match parse_time(value, site.offset) {
                 Ok(time) => taken = Some(time),

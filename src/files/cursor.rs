@@ -230,7 +230,10 @@ impl<'d> Map<'d> {
 
     /// A key that may be absent. A key left blank counts as absent.
     pub fn optional(&self, key: &'static str) -> Option<Value<'d>> {
-        self.asked.borrow_mut().push(key);
+        let mut asked = self.asked.borrow_mut();
+        if !asked.contains(&key) {
+            asked.push(key);
+        }
         let (_, node) = self.entries.iter().find(|(name, _)| name == key)?;
         (*node != Node::Null).then(|| self.at(key, node))
     }
@@ -247,6 +250,8 @@ impl<'d> Map<'d> {
         let asked = self.asked.borrow();
         for (key, _) in self.entries.iter().filter(|(key, _)| !asked.contains(&key.as_str())) {
             let cure = match nearest(key, &asked) {
+                // `{ altitude: 4,1 }` is for YAML an altitude of 4 and a key `1`
+                _ if key.parse::<f64>().is_ok() => "write decimals with a point, as 12.5".to_owned(),
                 Some(known) => format!("did you mean {known}?"),
                 None if asked.is_empty() => "leave it out; no key is allowed here".to_owned(),
                 None => format!("leave it out; allowed here: {}", asked.join(", ")),

@@ -13,6 +13,7 @@ use crate::units::System;
 
 use super::cast::{Told, cast};
 use super::text::{self, Format, Source};
+use super::yaml::Document;
 
 static DEMONSTRATIONS: Dir<'static> = include_dir!("$CARGO_MANIFEST_DIR/sites");
 
@@ -53,6 +54,21 @@ pub struct Folder {
     source: Source,
 }
 
+/// Why a site cannot be opened, and the units its user reads.
+#[derive(Debug, Clone)]
+pub struct Refused {
+    /// Every problem of the site file.
+    pub problems: Vec<Problem>,
+    /// The units of its user, as far as they are known.
+    pub system: System,
+}
+
+impl From<Problem> for Refused {
+    fn from(problem: Problem) -> Self {
+        Self { problems: vec![problem], system: System::default() }
+    }
+}
+
 /// A cast read against the site, with its bytes.
 #[derive(Debug, Clone)]
 pub struct Read {
@@ -79,7 +95,7 @@ impl Folder {
     ///
     /// # Errors
     /// Every problem of the site file, with lines.
-    pub fn open(named: &str) -> Result<Self, Vec<Problem>> {
+    pub fn open(named: &str) -> Result<Self, Refused> {
         let path = Path::new(named);
         if !path.exists() && demonstrations().contains(&named) {
             return Self::demonstration(named);
@@ -90,40 +106,37 @@ impl Folder {
             (path.parent().map(Path::to_owned).unwrap_or_default(), path.to_owned())
         };
         if path.is_dir() && !file.exists() {
-            return Err(vec![
-                Problem::refused(
-                    "no-site",
-                    "the folder has no site.yaml",
-                    "name a site folder, or write the demonstration sites with `gatemix demo`",
-                )
-                .in_file(named),
-            ]);
+            let cure = "name a site folder, or write the demonstration sites with `gatemix demo`";
+            return Err(Problem::refused("no-site", "the folder has no site.yaml", cure)
+                .in_file(named)
+                .into());
         }
-        Self::from_source(Root::Disk(root), text::read(&file, Format::Yaml).map_err(|p| vec![p])?)
+        Self::from_source(Root::Disk(root), text::read(&file, Format::Yaml)?)
     }
 
     /// Opens a demonstration site from inside the binary.
     ///
     /// # Errors
     /// Its problems; there are none in a released binary, which a test holds.
-    pub fn demonstration(name: &str) -> Result<Self, Vec<Problem>> {
+    pub fn demonstration(name: &str) -> Result<Self, Refused> {
         let file = format!("{name}/site.yaml");
         let source = inside(&file).ok_or_else(|| {
-            vec![Problem::refused(
+            Problem::refused(
                 "no-demonstration",
                 format!("no demonstration site is named `{name}`"),
                 format!("there are: {}", demonstrations().join(", ")),
-            )]
+            )
         })?;
-        Self::from_source(Root::Inside(name.to_owned()), source.map_err(|p| vec![p])?)
+        Self::from_source(Root::Inside(name.to_owned()), source?)
     }
 
-    fn from_source(root: Root, source: Source) -> Result<Self, Vec<Problem>> {
-        let (site, mut notes) = super::site::site(&source.text, &source.name);
+    fn from_source(root: Root, source: Source) -> Result<Self, Refused> {
+        let read = super::site::site(&source.text, &source.name);
+        let mut notes = read.problems;
         notes.extend(source.note());
-        match site {
+        match read.site {
             Some(site) => Ok(Self { root, site, notes, source }),
-            None => Err(notes),
+            None => Err(Refused { problems: notes, system: read.system }),
         }
     }
 
@@ -152,6 +165,27 @@ impl Folder {
         casts
     }
 
+    /// What a folder lacks that its site file counts on: any cast at all, and each cast it lists.
+    fn casts_said(&self, found: &[Listed]) -> Vec<Problem> {
+        let mut out = Vec::new();
+        if found.is_empty() {
+            out.push(Problem::note("no-cast", "there is no cast in `profiles`"));
+        }
+        for (i, listed) in self.site.casts.iter().enumerate() {
+            if !found.iter().any(|f| f.file == listed.file || base(&f.file) == listed.file) {
+                let words = format!("there is no cast `{}` in `profiles`", listed.file);
+                out.push(
+                    Problem::flag("cast-missing", words, "correct the name, or take it out of the list")
+                        .at(format!("casts[{i}].file")),
+                );
+            }
+        }
+        if let Ok(document) = Document::parse(&self.source.text) {
+            document.locate(&mut out, &self.source.name);
+        }
+        out
+    }
+
     /// When the newest cast of the folder was taken.
     pub fn newest_time(&self) -> Option<DateTime<FixedOffset>> {
         self.casts().iter().filter_map(|l| l.raw.as_ref()?.taken).max()
@@ -159,8 +193,7 @@ impl Folder {
 
     /// What the site file says of a cast of that file name.
     fn told(&self, name: &str) -> Told {
-        let base = Path::new(name).file_name().and_then(|n| n.to_str()).unwrap_or(name);
-        let listed = self.site.casts.iter().find(|c| c.file == name || c.file == base);
+        let listed = self.site.casts.iter().find(|c| c.file == name || c.file == base(name));
         listed.map_or_else(Told::default, |c| Told { taken: c.taken.clone(), pool_m: c.pool_m })
     }
 
@@ -303,6 +336,11 @@ impl Folder {
     }
 }
 
+/// The last part of a path, as the user lists it.
+fn base(name: &str) -> &str {
+    Path::new(name).file_name().and_then(|n| n.to_str()).unwrap_or(name)
+}
+
 fn is_csv(path: &Path) -> bool {
     path.extension().is_some_and(|e| e.eq_ignore_ascii_case("csv"))
 }
@@ -316,11 +354,13 @@ fn inside(file: &str) -> Option<Result<Source, Problem>> {
 /// Every problem of a site folder: the site file, then each cast; and the units its user reads.
 pub fn check(named: &str) -> (Vec<Problem>, System) {
     match Folder::open(named) {
-        Err(problems) => (problems, System::default()),
+        Err(refused) => (refused.problems, refused.system),
         Ok(folder) => {
             let mut problems = folder.notes.clone();
-            for listed in folder.casts() {
-                problems.extend(folder.profile_of(&listed).1);
+            let casts = folder.casts();
+            problems.extend(folder.casts_said(&casts));
+            for listed in &casts {
+                problems.extend(folder.profile_of(listed).1);
             }
             (problems, folder.site.units.system())
         }

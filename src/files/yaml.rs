@@ -95,8 +95,9 @@ fn syntax(error: &serde_yaml::Error, text: &str) -> Problem {
         return Problem::refused("yaml-tab", words, "indent with spaces").on_line(line);
     }
     let said = full.replacen(&format!(" at line {} column {}", place.line(), place.column()), "", 1);
-    Problem::refused("yaml", format!("this cannot be read as YAML: {said}"), cure_of(&full))
-        .on_line(place.line())
+    // a file that breaks off ends, for the parser, on the line after its last one
+    let line = place.line().min(file_lines(text).count().max(1));
+    Problem::refused("yaml", format!("this cannot be read as YAML: {said}"), cure_of(&full)).on_line(line)
 }
 
 fn cure_of(message: &str) -> &'static str {

@@ -5,13 +5,12 @@
 //!
 //! Methods: `docs/methods.md`, section 2.
 
-use crate::water;
-
 use super::levelled::levelled;
 use super::samples::{
-    OxygenSample, Sample, crossing_m, density_turn_m, interpolate, lerp, oxygen_at, oxygen_reach, sample_at,
+    OxygenSample, Sample, crossing_m, density_turn_m, interpolate, oxygen_at, oxygen_reach, sample_at,
 };
 use super::slices::Slices;
+use super::stretch::{Law, Stretch};
 
 /// Oxygen below this makes sulphide, iron and manganese likely, mg/L (common practice, no source).
 pub const OXYGEN_LOW_MG_L: f64 = 1.0;
@@ -42,49 +41,6 @@ pub struct Source<'a> {
     pub widths: Option<Widths<'a>>,
 }
 
-/// One stretch between two neighbouring nodes.
-#[derive(Debug, Clone, Copy)]
-pub(super) struct Segment {
-    pub(super) z: [f64; 2],
-    pub(super) temperature: [f64; 2],
-    pub(super) salt: [f64; 2],
-    pub(super) suspended: [f64; 2],
-    pub(super) oxygen: [f64; 2],
-    pub(super) width: [f64; 2],
-    /// Levelled density is `shift + scale * measured`.
-    shift: f64,
-    scale: f64,
-    /// Measured density at both ends, where it was given rather than computed.
-    given: Option<[f64; 2]>,
-    /// No oxygen reading reaches here.
-    pub(super) oxygen_missing: bool,
-    solids_kg_m3: f64,
-}
-
-impl Segment {
-    fn share(&self, z: f64) -> f64 {
-        (z - self.z[0]) / (self.z[1] - self.z[0])
-    }
-
-    #[inline]
-    fn density(&self, z: f64) -> f64 {
-        if self.scale == 0.0 {
-            return self.shift;
-        }
-        let t = self.share(z);
-        let raw = match self.given {
-            Some(given) => lerp(given, t),
-            None => water::density_kg_m3(
-                lerp(self.temperature, t),
-                lerp(self.salt, t),
-                lerp(self.suspended, t),
-                self.solids_kg_m3,
-            ),
-        };
-        self.shift + self.scale * raw
-    }
-}
-
 /// The column, ready to be asked.
 #[derive(Debug, Clone)]
 pub struct Column {
@@ -92,7 +48,7 @@ pub struct Column {
     surface_m: f64,
     nodes_m: Vec<f64>,
     density: Vec<f64>,
-    segments: Vec<Segment>,
+    stretches: Vec<Stretch>,
     slices: Slices,
     has_oxygen: bool,
     has_width: bool,
@@ -157,44 +113,49 @@ impl Column {
             all.extend_from_slice(&widths.nodes_m);
         }
         tidy(&mut all, bed_m, surface_m);
-        let mut segments = Vec::with_capacity(all.len() - 1);
+        let mut stretches = Vec::with_capacity(all.len() - 1);
         let mut k = 0;
         for ends in all.windows(2) {
             let middle = 0.5 * (ends[0] + ends[1]);
             while k + 2 < nodes.len() && nodes[k + 1] <= middle {
                 k += 1;
             }
-            let (scale, shift) = level_map([measured[k], measured[k + 1]], [level[k], level[k + 1]]);
+            let (measured, level) = ([measured[k], measured[k + 1]], [level[k], level[k + 1]]);
             let [low, high] = [sample_at(samples, ends[0]), sample_at(samples, ends[1])];
-            segments.push(Segment {
-                z: [ends[0], ends[1]],
-                temperature: [low.temperature_c, high.temperature_c],
-                salt: [low.salt_g_per_kg, high.salt_g_per_kg],
-                suspended: [low.suspended_mg_l, high.suspended_mg_l],
-                oxygen: [oxygen_at(oxygen, ends[0]), oxygen_at(oxygen, ends[1])],
+            let fresh = [low, high].iter().all(|s| s.salt_g_per_kg == 0.0 && s.suspended_mg_l == 0.0);
+            let law = match given {
+                Some(g) => Law::Given([ends[0], ends[1]].map(|z| interpolate(samples, z, |i| g[i]))),
+                None if fresh => Law::Fresh,
+                None => Law::Solids(solids_kg_m3),
+            };
+            let (law, shift, scale) = levelled_law(law, measured, level);
+            stretches.push(Stretch {
+                z_m: [ends[0], ends[1]],
+                per_m: 1.0 / (ends[1] - ends[0]),
+                temperature_c: [low.temperature_c, high.temperature_c],
+                salt_g_per_kg: [low.salt_g_per_kg, high.salt_g_per_kg],
+                suspended_mg_l: [low.suspended_mg_l, high.suspended_mg_l],
+                oxygen_mg_l: [oxygen_at(oxygen, ends[0]), oxygen_at(oxygen, ends[1])],
                 width: source.widths.as_ref().map_or([1.0, 1.0], |w| [(w.at)(ends[0]), (w.at)(ends[1])]),
+                oxygen_missing: reach.is_none_or(|(low, high)| middle < low || middle > high),
+                law,
                 shift,
                 scale,
-                given: given.map(|g| {
-                    [interpolate(samples, ends[0], |i| g[i]), interpolate(samples, ends[1], |i| g[i])]
-                }),
-                oxygen_missing: reach.is_none_or(|(low, high)| middle < low || middle > high),
-                solids_kg_m3,
             });
         }
-        let mut density: Vec<f64> = segments.iter().map(|s| s.density(s.z[0])).collect();
-        density.push(segments.last().map(|s| s.density(s.z[1]))?);
+        let mut density: Vec<f64> = stretches.iter().map(|s| s.density_kg_m3(s.z_m[0])).collect();
+        density.push(stretches.last().map(|s| s.density_kg_m3(s.z_m[1]))?);
         // round-off of the map must not undo the levelling
         for i in 1..density.len() {
             density[i] = density[i].min(density[i - 1]);
         }
-        let slices = Slices::new(&segments, surface_m - bed_m, Segment::density);
+        let slices = Slices::new(&stretches, surface_m - bed_m);
         Some(Self {
             bed_m,
             surface_m,
             nodes_m: all,
             density,
-            segments,
+            stretches,
             slices,
             has_oxygen: !oxygen.is_empty(),
             has_width: source.widths.is_some(),
@@ -236,52 +197,45 @@ impl Column {
         &self.slices
     }
 
-    fn segment(&self, z: f64) -> &Segment {
-        let i = self.nodes_m.partition_point(|&n| n <= z).clamp(1, self.segments.len());
-        &self.segments[i - 1]
+    /// Index of the stretch that holds an elevation, the nearest beyond bed and surface.
+    pub fn holding(&self, z: f64) -> usize {
+        self.slices.stretch[self.slices.holding(z)]
+    }
+
+    /// The stretch between node `i` and node `i + 1`.
+    #[inline]
+    pub fn stretch(&self, i: usize) -> &Stretch {
+        &self.stretches[i]
     }
 
     /// Levelled density at an elevation, kg/m3; held beyond bed and surface.
     pub fn density_kg_m3(&self, z: f64) -> f64 {
         let z = z.clamp(self.bed_m, self.surface_m);
-        self.segment(z).density(z)
+        self.stretch(self.holding(z)).density_kg_m3(z)
     }
 
-    /// Levelled density inside the stretch between node `i` and node `i + 1`, kg/m3.
+    /// Levelled density inside stretch `i`, kg/m3.
     #[inline]
     pub fn density_in(&self, i: usize, z: f64) -> f64 {
-        self.segments[i].density(z)
+        self.stretches[i].density_kg_m3(z)
     }
 
     /// What was measured at an elevation.
     pub fn reading(&self, z: f64) -> Reading {
-        self.point(z).2
-    }
-
-    /// Levelled density (kg/m3), width (any constant factor; 1 without widths) and reading at an elevation.
-    pub fn point(&self, z: f64) -> (f64, f64, Reading) {
         let z = z.clamp(self.bed_m, self.surface_m);
-        let s = self.segment(z);
-        let t = s.share(z);
-        let reading = Reading {
-            temperature_c: lerp(s.temperature, t),
-            salt_g_per_kg: lerp(s.salt, t),
-            suspended_mg_l: lerp(s.suspended, t),
-            oxygen_mg_l: (!s.oxygen_missing).then(|| lerp(s.oxygen, t)),
-        };
-        (s.density(z), lerp(s.width, t), reading)
+        self.stretch(self.holding(z)).reading(z)
     }
 }
 
-/// Slope and intercept that carry measured density of a stretch onto the levelled one. A stretch whose ends
-/// were pooled together is flat; one whose ends were pooled apart still falls upward, so the slope exists.
-fn level_map(measured: [f64; 2], level: [f64; 2]) -> (f64, f64) {
+/// Law, shift and scale that carry measured density of a stretch onto the levelled one. A stretch whose ends
+/// were pooled together is flat; one whose ends were pooled apart still falls upward, so the scale exists.
+fn levelled_law(law: Law, measured: [f64; 2], level: [f64; 2]) -> (Law, f64, f64) {
     let (fall, kept) = (measured[0] - measured[1], level[0] - level[1]);
     if kept <= 0.0 || fall <= 0.0 {
-        (0.0, level[0])
+        (Law::Flat(level[0]), 0.0, 1.0)
     } else {
         let scale = kept / fall;
-        (scale, level[0] - scale * measured[0])
+        (law, level[0] - scale * measured[0], scale)
     }
 }
 

@@ -4,7 +4,7 @@ use crate::problem::Problem;
 use crate::site::Site;
 use crate::units::say;
 
-use super::cast::{Raw, RawRow};
+use super::raw::{Raw, RawRow};
 
 /// Samples up to this far above the pool count as at the surface, m (choice).
 pub const ABOVE_SURFACE_M: f64 = 0.1;

@@ -4,8 +4,8 @@
 //! ```text
 //!   ft    outlets        zones   temperature * 40 to 75 F, oxygen o 4 to 9 mg/L
 //!  1,470 |              | .    |                  o                     *    |
-//!  1,455 |   W1 E1      | +    |               o                     *       |
-//!  1,395 | > W3 E3      | #    |       *    o                                |
+//!  1,455 |   N1 S1      | +    |               o                     *       |
+//!  1,395 | >N3 >S3      | #    |       *    o                                |
 //! ```
 
 use std::fmt::Write as _;
@@ -22,9 +22,11 @@ use crate::units::{Dimension, System, Unit, figure};
 /// Rows of the picture.
 const ROWS: usize = 22;
 /// Width of the outlet names.
-const NAMES: usize = 15;
-/// Width of the curves.
-const CURVES: usize = 41;
+const NAMES: usize = 18;
+/// Width of a row.
+const WIDTH: usize = 80;
+/// What of a row is neither names, zones nor curves: the elevation, the rules and their blanks.
+const FRAME: usize = 18;
 /// Least span of the temperature scale, C: less would draw the sensor's noise.
 const LEAST_C: f64 = 4.0;
 /// Zones drawn beside each other.
@@ -39,6 +41,7 @@ pub fn drawn_column(site: &Site, profile: &Profile, drawn: &[Drawn], system: Sys
     let oxygen = oxygen_scale(profile);
     let length = system.unit(Dimension::Length);
     let zones_width = zones.len().max(1) * 2;
+    let width = WIDTH - FRAME - NAMES - zones_width;
     let mut out = format!(
         "{:>7}   {:<NAMES$} {:<zones_width$}   {}\n",
         length.symbol(),
@@ -62,7 +65,7 @@ pub fn drawn_column(site: &Site, profile: &Profile, drawn: &[Drawn], system: Sys
             "{label:>7} | {} | {} | {} |",
             names(site, drawn, within),
             bars(profile, &zones, middle, within),
-            curves(profile, middle, &temperature, oxygen.as_ref(), system)
+            curves(profile, middle, width, &temperature, oxygen.as_ref(), system)
         );
     }
     let dry: Vec<String> =
@@ -145,17 +148,18 @@ fn bars(profile: &Profile, zones: &[&Drawn], middle: f64, within: impl Fn(f64) -
 fn curves(
     profile: &Profile,
     middle: f64,
+    width: usize,
     temperature: &Scale,
     oxygen: Option<&Scale>,
     system: System,
 ) -> String {
     let unit = system.unit(Dimension::Temperature);
     let reading = profile.column.reading(middle);
-    let mut cells = vec![' '; CURVES];
-    if let Some(at) = oxygen.zip(reading.oxygen_mg_l).and_then(|(s, o)| s.cell(o, CURVES)) {
+    let mut cells = vec![' '; width];
+    if let Some(at) = oxygen.zip(reading.oxygen_mg_l).and_then(|(s, o)| s.cell(o, width)) {
         cells[at] = 'o';
     }
-    if let Some(at) = temperature.cell(unit.from_si(reading.temperature_c), CURVES) {
+    if let Some(at) = temperature.cell(unit.from_si(reading.temperature_c), width) {
         cells[at] = if cells[at] == 'o' { '8' } else { '*' };
     }
     cells.into_iter().collect()

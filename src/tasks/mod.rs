@@ -133,7 +133,7 @@ pub fn open(asked: &Asked, clock: DateTime<Utc>) -> Result<Context, Failure> {
 fn open_folder(asked: &Asked) -> Result<Folder, Failure> {
     let first = || demonstrations().first().copied().unwrap_or_default();
     let opened = asked.site.as_deref().map_or_else(|| Folder::demonstration(first()), Folder::open);
-    opened.map_err(|problems| Failure::Refused(problems, asked.units.unwrap_or_default()))
+    opened.map_err(|refused| Failure::Refused(refused.problems, asked.units.unwrap_or(refused.system)))
 }
 
 fn decision_date(

@@ -2,6 +2,8 @@
 //!
 //! Methods: `docs/methods.md`, section 3.
 
+use std::f64::consts::PI;
+
 use crate::profile::Column;
 use crate::water::G_M_S2;
 
@@ -81,26 +83,25 @@ pub(super) fn crest(
 /// just meets the bed, m3/s.
 fn over(column: &Column, crest_m: f64, flow: f64, length_m: f64, form: CrestForm) -> (f64, f64) {
     let head = column.surface_m() - crest_m;
-    let reach = Reach { column, centre_m: crest_m, density: column.density_kg_m3(crest_m), angle: 1.0 };
+    let reach = Reach::new(column, crest_m, PI);
+    // squared, as the search wants it
     let relation = |distance: f64, difference: f64| {
         let gravity = G_M_S2 * difference / reach.density;
+        let depth = distance + head;
         let per_metre = match form {
-            CrestForm::Overflow | CrestForm::Larger => {
-                GRACE * (distance + head) * (gravity * distance).sqrt()
-            }
-            CrestForm::Control => CONTROL * gravity.sqrt() * (distance + head).powf(1.5),
+            CrestForm::Overflow | CrestForm::Larger => GRACE * GRACE * depth * depth * gravity * distance,
+            CrestForm::Control => CONTROL * CONTROL * gravity * depth.powi(3),
         };
-        per_metre * length_m
+        per_metre * length_m * length_m
     };
+    let met = reach.meet(Way::Down, flow, relation);
     let (distance, difference) = reach.boundary(Way::Down);
-    let met = reach.meet(Way::Down, |distance, difference| relation(distance, difference) - flow);
-    (met.unwrap_or(column.bed_m()), relation(distance, difference))
+    (met.unwrap_or(column.bed_m()), relation(distance, difference).sqrt())
 }
 
 /// The same of a port at mid-head: a crest shorter than its zone is deep draws from all round.
 fn round(column: &Column, centre_m: f64, flow: f64) -> (f64, f64) {
-    let reach = Reach { column, centre_m, density: column.density_kg_m3(centre_m), angle: 1.0 };
-    let surface_flow = reach.boundary_flow_m3s(Way::Up);
-    let met = reach.bounded(Way::Down, flow, reach.room_m(Way::Up), surface_flow);
+    let reach = Reach::new(column, centre_m, PI);
+    let met = reach.bounded(Way::Down, flow);
     (met.unwrap_or(column.bed_m()), reach.boundary_flow_m3s(Way::Down))
 }

@@ -40,17 +40,36 @@ pub(super) enum Way {
     Down,
 }
 
-/// What is known of a port while its limits are sought.
-pub(super) struct Reach<'a> {
-    pub(super) column: &'a Column,
-    pub(super) centre_m: f64,
-    /// Density at the centre-line, kg/m3.
-    pub(super) density: f64,
-    /// theta/pi.
-    pub(super) angle: f64,
+impl Way {
+    fn other(self) -> Self {
+        match self {
+            Self::Up => Self::Down,
+            Self::Down => Self::Up,
+        }
+    }
 }
 
-impl Reach<'_> {
+/// What is known of a sink while its limits are sought. Flow relations are kept squared, which spares the
+/// search every root.
+pub(super) struct Reach<'a> {
+    column: &'a Column,
+    centre_m: f64,
+    /// Stretch of the column that holds the centre-line.
+    home: usize,
+    /// Density at the centre-line, kg/m3.
+    pub(super) density: f64,
+    /// (theta/pi)^2 g/rho0.
+    scale: f64,
+}
+
+impl<'a> Reach<'a> {
+    /// `centre_m` lies between bed and surface.
+    pub(super) fn new(column: &'a Column, centre_m: f64, angle_rad: f64) -> Self {
+        let home = column.holding(centre_m);
+        let density = column.density_in(home, centre_m);
+        Self { column, centre_m, home, density, scale: (angle_rad / PI).powi(2) * G_M_S2 / density }
+    }
+
     pub(super) fn boundary_m(&self, way: Way) -> f64 {
         match way {
             Way::Up => self.column.surface_m(),
@@ -58,23 +77,14 @@ impl Reach<'_> {
         }
     }
 
-    /// Distance from the centre-line to the boundary, m.
-    pub(super) fn room_m(&self, way: Way) -> f64 {
-        (self.boundary_m(way) - self.centre_m).abs()
-    }
-
+    /// Distance (m) and density difference (kg/m3) from the centre-line to a node.
+    #[inline]
     fn node(&self, i: usize) -> (f64, f64) {
         let z = self.column.nodes_m()[i];
         ((z - self.centre_m).abs(), (self.column.node_density_kg_m3()[i] - self.density).abs())
     }
 
-    /// The free-limit flow F(Z) = (theta/pi) Z^2.5 sqrt(g drho/rho0), m3/s, from the density difference.
-    #[inline]
-    fn flow(&self, distance: f64, difference: f64) -> f64 {
-        self.angle * distance * distance * (distance * G_M_S2 * difference / self.density).sqrt()
-    }
-
-    /// Distance (m) and density difference (kg/m3) from the centre-line to the boundary.
+    /// The same to the boundary.
     pub(super) fn boundary(&self, way: Way) -> (f64, f64) {
         self.node(match way {
             Way::Up => self.column.nodes_m().len() - 1,
@@ -82,113 +92,109 @@ impl Reach<'_> {
         })
     }
 
+    /// The free-limit flow F(Z) = (theta/pi) Z^2.5 sqrt(g drho/rho0), squared, from the density difference.
+    #[inline]
+    fn square(&self, distance: f64, difference: f64) -> f64 {
+        let area = distance * distance;
+        self.scale * area * area * distance * difference
+    }
+
     /// F at the boundary, m3/s.
     pub(super) fn boundary_flow_m3s(&self, way: Way) -> f64 {
         let (distance, difference) = self.boundary(way);
-        self.flow(distance, difference)
+        self.square(distance, difference).sqrt()
     }
 
     /// Free limit on one side: elevation where F = `flow`, or `None` when the boundary comes first.
     pub(super) fn free(&self, way: Way, flow: f64) -> Option<f64> {
-        self.meet(way, |distance, difference| self.flow(distance, difference) - flow)
+        self.meet(way, flow, |distance, difference| self.square(distance, difference))
     }
 
-    /// Limit on one side when the other is bounded at `bound_m` from the centre-line and would just touch at
-    /// `bound_flow`: elevation where phi F = `flow`, or `None` when the boundary comes first.
-    pub(super) fn bounded(&self, way: Way, flow: f64, bound_m: f64, bound_flow: f64) -> Option<f64> {
-        let touched = (bound_flow / flow).cbrt();
-        self.meet(way, |distance, difference| {
-            boundary_factor((bound_m / distance).max(touched)) * self.flow(distance, difference) - flow
+    /// Limit on one side when the other has met its boundary: elevation where phi F = `flow`, or `None` when
+    /// the boundary comes first.
+    pub(super) fn bounded(&self, way: Way, flow: f64) -> Option<f64> {
+        let other = way.other();
+        let (bound, _) = self.boundary(other);
+        let touched = (self.boundary_flow_m3s(other) / flow).cbrt();
+        self.meet(way, flow, |distance, difference| {
+            let share = boundary_factor((bound / distance).max(touched));
+            share * share * self.square(distance, difference)
         })
     }
 
-    /// The elevation at which a flow relation meets the flow: `excess(distance, density difference)` is below
-    /// zero short of it and never falls outward, so the nodes are bisected first and the stretch between two
-    /// of them is then solved. `None` when it is not met before the boundary.
-    pub(super) fn meet(&self, way: Way, excess: impl Fn(f64, f64) -> f64) -> Option<f64> {
+    /// The elevation at which a flow relation meets the flow. `square(distance, density difference)` is the
+    /// relation squared; it never falls outward, so the nodes are halved first and the stretch between two of
+    /// them is then solved. `None` when it is not met before the boundary.
+    pub(super) fn meet(&self, way: Way, flow: f64, square: impl Fn(f64, f64) -> f64) -> Option<f64> {
         let nodes = self.column.nodes_m();
-        let at_node = |i: usize| {
-            let (distance, difference) = self.node(i);
-            excess(distance, difference)
+        // nodes are counted outward from the centre-line
+        let (count, first) = match way {
+            Way::Up => (nodes.len() - 1 - self.home, self.home + 1),
+            Way::Down => (self.home + 1, self.home),
         };
-        let first_above = nodes.partition_point(|&z| z <= self.centre_m);
-        // the outermost node still short of the flow is `inner`; the one beyond meets it
-        let (segment, from, to) = match way {
-            Way::Up => {
-                let meets = partition(first_above, nodes.len(), |i| at_node(i) < 0.0);
-                if meets == nodes.len() {
-                    return None;
-                }
-                let inner = if meets == first_above { self.centre_m } else { nodes[meets - 1] };
-                (meets - 1, inner, nodes[meets])
-            }
-            Way::Down => {
-                let below = nodes.partition_point(|&z| z < self.centre_m);
-                let meets = partition(0, below, |i| at_node(i) >= 0.0);
-                if meets == 0 {
-                    return None;
-                }
-                let inner = if meets == below { self.centre_m } else { nodes[meets] };
-                (meets - 1, inner, nodes[meets - 1])
-            }
-        };
+        let outward = |i: usize, k: usize| if way == Way::Up { i + k } else { i - k };
+        let node = |k: usize| outward(first, k);
+        let target = flow * flow;
+        let (meets, at_inner, at_outer) = first_at_least(target, count, |k| {
+            let (distance, difference) = self.node(node(k));
+            square(distance, difference)
+        })?;
+        // nearly straight in elevation where density is linear: there the square goes as Z^6, and this
+        // quotient has no curvature where it is zero (derived; Halley's step for a sixth power)
+        let excess = |square: f64| (square - target) / (square + 1.4 * target);
+        let inner = if meets == 0 { self.centre_m } else { nodes[node(meets - 1)] };
+        let stretch = self.column.stretch(outward(self.home, meets));
         let value = |z: f64| {
-            let difference = (self.column.density_in(segment, z) - self.density).abs();
-            excess((z - self.centre_m).abs(), difference)
+            let difference = (stretch.density_kg_m3(z) - self.density).abs();
+            excess(square((z - self.centre_m).abs(), difference))
         };
-        Some(root(value, from, to))
+        Some(root(value, [inner, nodes[node(meets)]], [excess(at_inner), excess(at_outer)]))
     }
 }
 
-/// First index of `low..high` at which `pred` turns false.
-fn partition(mut low: usize, mut high: usize, pred: impl Fn(usize) -> bool) -> usize {
+/// First index below `count` at which a value that never falls is not below `target`, with the value before
+/// it (0 before the first) and the value there. `None` when all are below.
+#[inline]
+fn first_at_least(target: f64, count: usize, value: impl Fn(usize) -> f64) -> Option<(usize, f64, f64)> {
+    let (mut low, mut high) = (0, count);
+    let (mut before, mut there) = (0.0, None);
     while low < high {
         let middle = low + (high - low) / 2;
-        if pred(middle) {
-            low = middle + 1;
+        let at = value(middle);
+        if at < target {
+            (low, before) = (middle + 1, at);
         } else {
-            high = middle;
+            (high, there) = (middle, Some(at));
         }
     }
-    low
+    there.map(|there| (low, before, there))
 }
 
-/// Limits are found to this distance, m.
-const LIMIT_M: f64 = 1e-10;
+/// The step from an excess smaller than this is the last (choice): it leaves a small part of it.
+const LAST_EXCESS: f64 = 1e-7;
+/// Elevations are not told apart more finely, m (choice): where density barely differs its round-off hides the
+/// excess.
+const LEAST_STEP_M: f64 = 1e-11;
 /// Most steps of the root search; bisection alone would need about 45 from 10 km.
 const STEPS: usize = 100;
 
-/// Root of a function that is below zero at `short` and not below it at `beyond`, by false position with
-/// the Anderson-Bjorck weight, which keeps the bracket.
-pub(super) fn root(value: impl Fn(f64) -> f64, short: f64, beyond: f64) -> f64 {
-    let (mut a, mut b) = (short, beyond);
-    let (mut fa, mut fb) = (value(a), value(b));
-    // round-off at a node can turn the sign there; the node is then the limit
-    if fb <= 0.0 {
-        return b;
-    }
-    if fa >= 0.0 {
-        return a;
-    }
+/// Root of a function that is below zero at the first end and not below it at the second, by false position
+/// with the Anderson-Bjorck weight, which keeps the bracket. The values at the ends are given.
+fn root(value: impl Fn(f64) -> f64, [mut a, mut b]: [f64; 2], [mut at_a, mut at_b]: [f64; 2]) -> f64 {
     for _ in 0..STEPS {
-        let c = (a * fb - b * fa) / (fb - fa);
-        // false position can leave the bracket only by round-off
-        let c = if (c - a) * (c - b) < 0.0 { c } else { 0.5 * (a + b) };
-        let fc = value(c);
-        if fc == 0.0 {
-            return c;
+        let step = (a - b) * at_b / (at_b - at_a);
+        if at_b.abs() < LAST_EXCESS || step.abs() < LEAST_STEP_M {
+            return b + step;
         }
-        if fc * fb < 0.0 {
-            (a, fa) = (b, fb);
+        let c = b + step;
+        let at_c = value(c);
+        if at_c * at_b < 0.0 {
+            (a, at_a) = (b, at_b);
         } else {
-            let weight = 1.0 - fc / fb;
-            fa *= if weight > 0.0 { weight } else { 0.5 };
+            let weight = 1.0 - at_c / at_b;
+            at_a *= if weight > 0.0 { weight } else { 0.5 };
         }
-        let moved = (c - b).abs();
-        (b, fb) = (c, fc);
-        if (b - a).abs() < LIMIT_M || moved < LIMIT_M * 1e-2 {
-            break;
-        }
+        (b, at_b) = (c, at_c);
     }
     b
 }

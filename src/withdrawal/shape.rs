@@ -2,7 +2,9 @@
 //!
 //! Methods: `docs/methods.md`, section 3.
 
-use crate::profile::Column;
+use std::ops::Range;
+
+use crate::profile::{Column, Slices};
 
 use super::zone::{Side, Zone};
 
@@ -10,18 +12,18 @@ use super::zone::{Side, Zone};
 /// here to twice this they come in by degrees (choice): a bare switch would be a jump in flow, since the
 /// peak moves with it.
 pub const NOISE_KG_M3: f64 = 1e-3;
+/// A side thinner than this has no shape, m (choice).
+const THIN_M: f64 = 1e-9;
 /// A draw takes oxygen as missing when more of it than this comes from where no reading reaches (choice).
 const MISSING_SHARE: f64 = 0.05;
-/// Five-point Gauss-Legendre rule on -1..1 (Abramowitz & Stegun 1964, table 25.4; from memory, exactness
-/// for ninth-degree polynomials is tested), for the slices that a limit or the peak cuts.
-const GAUSS: [(f64, f64); 5] = [
-    (-0.906_179_845_938_664, 0.236_926_885_056_189_08),
-    (-0.538_469_310_105_683_1, 0.478_628_670_499_366_47),
-    (0.0, 0.568_888_888_888_888_9),
-    (0.538_469_310_105_683_1, 0.478_628_670_499_366_47),
-    (0.906_179_845_938_664, 0.236_926_885_056_189_08),
+/// Three-point Gauss-Legendre rule on -1..1 (Abramowitz & Stegun 1964, table 25.4; from memory: sqrt(3/5),
+/// 5/9, 8/9) for the slices that a limit or the peak cuts: exact for the velocity of a linear density times
+/// a linear tracer, so that a zone within one slice loses nothing.
+const GAUSS: [(f64, f64); 3] = [
+    (-0.774_596_669_241_483_4, 0.555_555_555_555_555_6),
+    (0.0, 0.888_888_888_888_888_8),
+    (0.774_596_669_241_483_4, 0.555_555_555_555_555_6),
 ];
-
 /// The flow-weighted water of a zone.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Draw {
@@ -39,14 +41,28 @@ pub struct Draw {
     pub oxygen_low_share: f64,
 }
 
+/// An elevation, the slice that holds it, and the density there.
+#[derive(Clone, Copy)]
+struct Place {
+    z: f64,
+    slice: usize,
+    density: f64,
+}
+
+impl Place {
+    fn new(column: &Column, z: f64) -> Self {
+        let slice = column.slices().holding(z);
+        Self { z, slice, density: column.stretch(column.slices().stretch[slice]).density_kg_m3(z) }
+    }
+}
+
 /// Velocity on one side of the peak, relative to the greatest: v = w (1 - x)^2 + (1 - w)(1 - x^2),
 /// x = y drho/(Y drho_m), or y/Y where drho_m is noise.
 ///
 /// The two end forms: Bohan & Grace 1973 (recalled). The weight w is ours (choice).
 struct HalfShape {
     peak_m: f64,
-    peak_density: f64,
-    /// x = (z - peak) (by_distance + by_density (rho - peak density)); both signed so that x is not negative.
+    /// x = (z - peak) (by_distance + by_density rho).
     by_distance: f64,
     by_density: f64,
     /// 1 - 2 w: the two forms share 1 - x, which leaves 1 + (1 - 2 w) x.
@@ -54,24 +70,25 @@ struct HalfShape {
 }
 
 impl HalfShape {
-    fn new(column: &Column, zone: &Zone, side: &Side) -> Self {
-        let peak_density = column.density_kg_m3(zone.peak_m);
-        let span = side.limit_m - zone.peak_m;
-        let difference = column.density_kg_m3(side.limit_m) - peak_density;
+    /// The side that ends at `limit`, of a zone with its peak at `peak`.
+    fn new(side: &Side, limit: &Place, peak: &Place) -> Self {
+        let span = limit.z - peak.z;
+        let difference = limit.density - peak.density;
         let told = (difference.abs() / NOISE_KG_M3 - 1.0).clamp(0.0, 1.0);
-        let over = |whole: f64| if whole == 0.0 { 0.0 } else { 1.0 / whole };
+        // a side without thickness is all peak
+        let over_span = if span.abs() < THIN_M { 0.0 } else { 1.0 / span };
+        let by_density = if told > 0.0 { told * over_span / difference } else { 0.0 };
         Self {
-            peak_m: zone.peak_m,
-            peak_density,
-            by_distance: (1.0 - told) * over(span),
-            by_density: told * over(span * difference),
+            peak_m: peak.z,
+            by_distance: (1.0 - told) * over_span - by_density * peak.density,
+            by_density,
             skew: 1.0 - 2.0 * side.free_weight,
         }
     }
 
     #[inline]
     fn velocity(&self, z: f64, density: f64) -> f64 {
-        let x = (z - self.peak_m) * (self.by_distance + self.by_density * (density - self.peak_density));
+        let x = (z - self.peak_m) * (self.by_distance + self.by_density * density);
         // the limit itself is found to round-off
         let x = if x < 1.0 { x } else { 1.0 };
         (1.0 - x) * (1.0 + self.skew * x)
@@ -91,30 +108,41 @@ struct Sums {
 }
 
 impl Zone {
+    /// Both sides of the peak: from where to where, and the shape between.
+    fn sides(&self, column: &Column) -> [(Place, Place, HalfShape); 2] {
+        let place = |z: f64| Place::new(column, z);
+        let [low, peak, high] = [self.lower.limit_m, self.peak_m, self.upper.limit_m].map(place);
+        let below = HalfShape::new(&self.lower, &low, &peak);
+        let above = HalfShape::new(&self.upper, &high, &peak);
+        [(low, peak, below), (peak, high, above)]
+    }
+
     /// Velocity at an elevation relative to the greatest, 0 outside the zone.
     pub fn velocity(&self, column: &Column, z: f64) -> f64 {
         if z < self.lower.limit_m || z > self.upper.limit_m {
             return 0.0;
         }
-        let side = if z < self.peak_m { &self.lower } else { &self.upper };
-        HalfShape::new(column, self, side).velocity(z, column.density_kg_m3(z))
+        let [(.., below), (.., above)] = self.sides(column);
+        let shape = if z < self.peak_m { below } else { above };
+        shape.velocity(z, column.density_kg_m3(z))
     }
 
     /// Shares of the zone's flow by slice: lower edge, upper edge (m) and share; they sum to 1.
     pub fn shares(&self, column: &Column) -> Vec<(f64, f64, f64)> {
+        let edges = &column.slices().edges_m;
         let mut out = Vec::new();
         let mut total = 0.0;
-        for side in [&self.lower, &self.upper] {
-            let shape = HalfShape::new(column, self, side);
-            let (from, to) = ordered(side.limit_m, self.peak_m);
-            for (low, high) in pieces(&column.slices().edges_m, from, to) {
-                let mut sums = Sums::default();
-                shape.gauss(column, low, high, &mut sums);
-                total += sums.flow;
-                out.push((low, high, sums.flow));
+        for (from, to, shape) in self.sides(column) {
+            for slice in from.slice..=to.slice {
+                let (low, high) = (edges[slice].max(from.z), edges[slice + 1].min(to.z));
+                if high > low {
+                    let mut sums = Sums::default();
+                    shape.part(column, slice, [low, high], &mut sums);
+                    total += sums.flow;
+                    out.push((low, high, sums.flow));
+                }
             }
         }
-        out.sort_by(|a, b| a.0.total_cmp(&b.0));
         for share in &mut out {
             share.2 /= total;
         }
@@ -124,10 +152,8 @@ impl Zone {
     /// The flow-weighted water of the zone. `None` for a zone without thickness.
     pub fn draw(&self, column: &Column) -> Option<Draw> {
         let mut sums = Sums::default();
-        for side in [&self.lower, &self.upper] {
-            let shape = HalfShape::new(column, self, side);
-            let (from, to) = ordered(side.limit_m, self.peak_m);
-            shape.sum(column, from, to, &mut sums);
+        for (from, to, shape) in self.sides(column) {
+            shape.sum(column, &from, &to, &mut sums);
         }
         if sums.flow <= 0.0 {
             return None;
@@ -147,36 +173,30 @@ impl Zone {
     }
 }
 
-fn ordered(a: f64, b: f64) -> (f64, f64) {
-    if a <= b { (a, b) } else { (b, a) }
-}
-
-/// The stretches between `from` and `to`, cut at every edge.
-fn pieces(edges: &[f64], from: f64, to: f64) -> impl Iterator<Item = (f64, f64)> + '_ {
-    let first = edges.partition_point(|&e| e <= from);
-    let last = edges.partition_point(|&e| e < to);
-    let inner = if first < last { &edges[first..last] } else { &[] };
-    let starts = std::iter::once(from).chain(inner.iter().copied());
-    let ends = inner.iter().copied().chain(std::iter::once(to));
-    starts.zip(ends).filter(|(low, high)| high > low)
-}
-
 impl HalfShape {
-    /// Adds the zone's side between two elevations: whole slices from their prepared points, the slices that
-    /// `from` and `to` cut by the five-point rule.
-    fn sum(&self, column: &Column, from: f64, to: f64, sums: &mut Sums) {
-        let slices = column.slices();
-        let edges = &slices.edges_m;
-        let first = edges.partition_point(|&e| e < from);
-        let last = edges.partition_point(|&e| e <= to);
-        if first >= last {
-            return self.gauss(column, from, to, sums);
+    /// Adds the side between two elevations: whole slices from their prepared points, the slices that the
+    /// ends cut by the three-point rule.
+    fn sum(&self, column: &Column, from: &Place, to: &Place, sums: &mut Sums) {
+        let edges = &column.slices().edges_m;
+        if from.slice == to.slice {
+            return self.part(column, from.slice, [from.z, to.z], sums);
         }
-        self.gauss(column, from, edges[first], sums);
-        self.gauss(column, edges[last - 1], to, sums);
-        let range = 2 * first..2 * (last - 1);
-        let z = &slices.z_m[range.clone()];
-        let n = z.len();
+        self.part(column, from.slice, [from.z, edges[from.slice + 1]], sums);
+        self.part(column, to.slice, [edges[to.slice], to.z], sums);
+        let whole = from.slice + 1..to.slice;
+        if column.slices().plain {
+            self.whole::<true>(column.slices(), whole, sums);
+        } else {
+            self.whole::<false>(column.slices(), whole, sums);
+        }
+    }
+
+    /// Adds whole slices; in `PLAIN` water only flow, temperature and oxygen. The two points of a slice are two
+    /// lanes that need not wait for each other.
+    fn whole<const PLAIN: bool>(&self, slices: &Slices, range: Range<usize>, sums: &mut Sums) {
+        let mut lanes = [[0.0; 2]; 5];
+        let n = range.len();
+        let z = &slices.z_m[range.clone()][..n];
         let density = &slices.density_kg_m3[range.clone()][..n];
         let weight = &slices.weight[range.clone()][..n];
         let temperature = &slices.temperature_c[range.clone()][..n];
@@ -185,40 +205,62 @@ impl HalfShape {
         let suspended = &slices.suspended_mg_l[range.clone()][..n];
         let missing = &slices.oxygen_missing[range.clone()][..n];
         let low = &slices.oxygen_low[range][..n];
-        for i in 0..n {
-            let flow = self.velocity(z[i], density[i]) * weight[i];
-            sums.flow += flow;
-            sums.temperature += flow * temperature[i];
-            sums.oxygen += flow * oxygen[i];
-            sums.salt += flow * salt[i];
-            sums.suspended += flow * suspended[i];
-            sums.missing += flow * missing[i];
-            sums.low += flow * low[i];
-        }
-    }
-
-    fn gauss(&self, column: &Column, from: f64, to: f64, sums: &mut Sums) {
-        let half = 0.5 * (to - from);
-        if half <= 0.0 {
-            return;
-        }
-        for (at, share) in GAUSS {
-            let z = from + half * (1.0 + at);
-            let (density, width, reading) = column.point(z);
-            let flow = self.velocity(z, density) * width * half * share;
-            sums.flow += flow;
-            sums.temperature += flow * reading.temperature_c;
-            sums.salt += flow * reading.salt_g_per_kg;
-            sums.suspended += flow * reading.suspended_mg_l;
-            match reading.oxygen_mg_l {
-                Some(oxygen) => {
-                    sums.oxygen += flow * oxygen;
-                    if oxygen < crate::profile::OXYGEN_LOW_MG_L {
-                        sums.low += flow;
-                    }
-                }
-                None => sums.missing += flow,
+        for k in 0..n {
+            let flow = [0, 1].map(|i| self.velocity(z[k][i], density[k][i]) * weight[k][i]);
+            add(&mut lanes[0], flow);
+            add(&mut lanes[1], times(flow, temperature[k]));
+            add(&mut lanes[2], times(flow, oxygen[k]));
+            if !PLAIN {
+                add(&mut lanes[3], times(flow, salt[k]));
+                add(&mut lanes[4], times(flow, suspended[k]));
+            }
+            if !PLAIN {
+                let flow = flow[0] + flow[1];
+                sums.missing += if missing[k] { flow } else { 0.0 };
+                sums.low += if low[k] { flow } else { 0.0 };
             }
         }
+        let [flow, temperature, oxygen, salt, suspended] = lanes.map(|[a, b]| a + b);
+        sums.flow += flow;
+        sums.temperature += temperature;
+        sums.oxygen += oxygen;
+        sums.salt += salt;
+        sums.suspended += suspended;
     }
+
+    /// Adds a part of one slice. All that a stretch carries is linear in it, so the flow and its moment about
+    /// the lower end do for every tracer.
+    fn part(&self, column: &Column, slice: usize, [from, to]: [f64; 2], sums: &mut Sums) {
+        let half = 0.5 * (to - from);
+        let stretch = column.stretch(column.slices().stretch[slice]);
+        let (mut flow, mut moment) = (0.0, 0.0);
+        for (at, share) in GAUSS {
+            let z = from + half * (1.0 + at);
+            let here = self.velocity(z, stretch.density_kg_m3(z)) * stretch.width(z) * share;
+            flow += here;
+            moment += here * stretch.share(z);
+        }
+        (flow, moment) = (half * flow, half * moment);
+        let carried = |ends: [f64; 2]| ends[0] * (flow - moment) + ends[1] * moment;
+        sums.flow += flow;
+        sums.temperature += carried(stretch.temperature_c);
+        sums.salt += carried(stretch.salt_g_per_kg);
+        sums.suspended += carried(stretch.suspended_mg_l);
+        if stretch.oxygen_missing {
+            sums.missing += flow;
+        } else {
+            sums.oxygen += carried(stretch.oxygen_mg_l);
+            sums.low += if stretch.oxygen_low() { flow } else { 0.0 };
+        }
+    }
+}
+
+#[inline]
+fn add(sum: &mut [f64; 2], more: [f64; 2]) {
+    *sum = [sum[0] + more[0], sum[1] + more[1]];
+}
+
+#[inline]
+fn times(a: [f64; 2], b: [f64; 2]) -> [f64; 2] {
+    [a[0] * b[0], a[1] * b[1]]
 }

@@ -2,7 +2,7 @@
 //!
 //! Methods: `docs/methods.md`, section 3.
 
-use std::f64::consts::{FRAC_PI_2, PI};
+use std::f64::consts::FRAC_PI_2;
 
 use crate::profile::Column;
 
@@ -54,7 +54,8 @@ impl Zone {
     pub(super) fn between(lower: Side, upper: Side, centre_m: f64) -> Self {
         let thickness = upper.limit_m - lower.limit_m;
         let share = if thickness > 0.0 { (centre_m - lower.limit_m) / thickness } else { 0.5 };
-        let peak_m = lower.limit_m + thickness * (FRAC_PI_2 * share).sin().powi(2);
+        // round-off must not lift the peak of a sink at the surface out of its zone
+        let peak_m = (lower.limit_m + thickness * (FRAC_PI_2 * share).sin().powi(2)).min(upper.limit_m);
         Self { lower, upper, peak_m, centre_m }
     }
 }
@@ -63,15 +64,15 @@ impl Zone {
 /// exactly one is bounded, the other again with the boundary factor, which moves it outward and may bring
 /// it to its own boundary; when both are, the whole column.
 pub(super) fn port(column: &Column, centre_m: f64, flow: f64, angle_rad: f64) -> Zone {
-    let reach = Reach { column, centre_m, density: column.density_kg_m3(centre_m), angle: angle_rad / PI };
+    let reach = Reach::new(column, centre_m, angle_rad);
     let mut up = reach.free(Way::Up, flow);
     let mut down = reach.free(Way::Down, flow);
-    let (up_flow, down_flow) = (reach.boundary_flow_m3s(Way::Up), reach.boundary_flow_m3s(Way::Down));
     match (up, down) {
-        (None, Some(_)) => down = reach.bounded(Way::Down, flow, reach.room_m(Way::Up), up_flow),
-        (Some(_), None) => up = reach.bounded(Way::Up, flow, reach.room_m(Way::Down), down_flow),
+        (None, Some(_)) => down = reach.bounded(Way::Down, flow),
+        (Some(_), None) => up = reach.bounded(Way::Up, flow),
         _ => {}
     }
+    let (up_flow, down_flow) = (reach.boundary_flow_m3s(Way::Up), reach.boundary_flow_m3s(Way::Down));
     let side = |limit: Option<f64>, way, boundary_flow: f64| Side {
         limit_m: limit.unwrap_or_else(|| reach.boundary_m(way)),
         end: if limit.is_some() { End::Free } else { End::Boundary },

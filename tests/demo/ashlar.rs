@@ -76,7 +76,7 @@ impl Site {
         let rows = site["pool"]["table"].as_sequence().unwrap();
         let areas = rows.iter().map(|row| (FOOT_M * number(&row[0]), ACRE_M2 * number(&row[1])));
         let outlets = site["outlets"].as_sequence().unwrap().iter();
-        let gates = outlets.filter(|outlet| outlet["well"].as_str() == Some("West"));
+        let gates = outlets.filter(|outlet| outlet["well"].as_str() == Some("North"));
         Self {
             basin: Basin::new(areas),
             altitude_m: FOOT_M * number(&site["place"]["altitude"]),

@@ -6,7 +6,7 @@ use assert_cmd::Command;
 
 use crate::{read, root};
 
-const COMMAND: &str = "gatemix mix ashlar --set W2=500 --set E4=700";
+const COMMAND: &str = "gatemix mix ashlar --set N2=500 --set S4=700";
 
 /// What the command in the README prints.
 fn printed() -> String {

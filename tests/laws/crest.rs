@@ -9,7 +9,7 @@ use gatemix::withdrawal::{
 };
 use proptest::prelude::*;
 
-use crate::columns::{Pool, config, flow, port, stable};
+use crate::columns::{Pool, config, flow, port, slack, stable};
 
 const GRAVITY_M_S2: f64 = 9.80665;
 
@@ -58,13 +58,12 @@ proptest! {
         prop_assert_eq!(zone.upper.limit_m, column.surface_m());
         let limit = zone.lower.limit_m;
         let [needed, further] = [limit, limit - 1e-8].map(|z| crest_flow(&column, crest, length, form, z));
-        // a thin zone under a long crest: limits are not found to a millionth of it
-        let slack = further - needed;
+        let slack = slack(column.density_kg_m3(limit) - column.density_kg_m3(crest), further - needed, flow);
         if zone.lower.end == End::Free {
-            prop_assert!((needed - flow).abs() < 1e-6 * flow + slack, "{} of {}", needed, flow);
+            prop_assert!((needed / flow - 1.0).abs() < slack, "{} of {}", needed, flow);
         } else {
             prop_assert_eq!(zone.lower.limit_m, column.bed_m());
-            prop_assert!(needed <= flow * (1.0 + 1e-6));
+            prop_assert!(needed / flow - 1.0 < slack);
         }
     }
 
@@ -96,14 +95,14 @@ proptest! {
         let reach = crest - zone_over.lower.limit_m;
         let limit = zone_over.lower.limit_m;
         let [needed, further] = [limit, limit - 1e-8].map(|z| crest_flow(&column, crest, length, form, z));
-        let slack = further - needed;
+        let slack = slack(column.density_kg_m3(limit) - column.density_kg_m3(crest), further - needed, flow);
         if reach < length - 1e-6 {
             // still long: the overflow form alone
             if zone_over.lower.end == End::Free {
-                prop_assert!((needed - flow).abs() < 1e-6 * flow + slack, "{} of {}", needed, flow);
+                prop_assert!((needed / flow - 1.0).abs() < slack, "{} of {}", needed, flow);
             }
         } else {
-            prop_assert!(needed <= flow * (1.0 + 1e-6) + slack);
+            prop_assert!(needed / flow - 1.0 < slack);
             prop_assert!(zone_over.lower.limit_m >= round.lower.limit_m.min(crest - length) - 1e-6);
         }
     }
@@ -127,7 +126,7 @@ proptest! {
                 (low, at_low) = (middle, between);
             }
         }
-        prop_assert!((at_high - at_low).abs() < 1e-3, "{} C at {} m3/s", at_high - at_low, low);
+        prop_assert!((at_high - at_low).abs() < 5e-3, "{} C at {} m3/s", at_high - at_low, low);
     }
 
     #[test]

@@ -62,11 +62,12 @@ proptest! {
         let velocity = |z: f64| zone.velocity(&column, z);
         assert_relative_eq!(velocity(zone.peak_m), 1.0, max_relative = 1e-12);
         let anywhere = velocity(zone.lower.limit_m + inside * zone.thickness_m());
-        prop_assert!((-1e-12..=1.0 + 1e-12).contains(&anywhere));
+        // to the round-off of a density of 1000 kg/m3 beside a difference of 0.001
+        prop_assert!((-1e-9..=1.0 + 1e-9).contains(&anywhere));
         for side in [&zone.lower, &zone.upper] {
             let span = side.limit_m - zone.peak_m;
             if side.end == End::Free {
-                prop_assert!(velocity(side.limit_m).abs() < 1e-12);
+                prop_assert!(velocity(side.limit_m).abs() < 1e-9);
             }
             // continuous across the peak: next to it still the greatest
             prop_assert!(velocity(zone.peak_m + 1e-7 * span) > 1.0 - 1e-6);
@@ -85,7 +86,7 @@ proptest! {
         let temperature = of(&|z| column.reading(z).temperature_c);
         let salt = of(&|z| column.reading(z).salt_g_per_kg);
         let suspended = of(&|z| column.reading(z).suspended_mg_l);
-        prop_assert!((drawn.temperature_c - temperature).abs() < 2e-3, "{} {}", drawn.temperature_c, temperature);
+        prop_assert!((drawn.temperature_c - temperature).abs() < 3e-3, "{} {}", drawn.temperature_c, temperature);
         prop_assert!((drawn.salt_g_per_kg - salt).abs() < 1e-3);
         prop_assert!((drawn.suspended_mg_l - suspended).abs() < 5e-2);
     }
@@ -138,10 +139,10 @@ proptest! {
     /// Over 5 % from where no reading reaches: missing. Less: the mean over what is known.
     #[test]
     fn law_oxygen_from_unread_water(
-        pool in stable(), at in share(), flow in flow(), first in 0.0..1.0_f64
+        pool in stable(), at in share(), flow in flow(), first in any::<prop::sample::Index>()
     ) {
         let mut pool = pool;
-        let lowest = (first * (pool.oxygen.len() - 1) as f64) as usize;
+        let lowest = first.index(pool.oxygen.len());
         pool.oxygen.drain(..lowest);
         let spacing = pool.oxygen.windows(2).next().map_or(0.0, |w| w[1].elevation_m - w[0].elevation_m);
         let carried_to = pool.oxygen[0].elevation_m - spacing.max(OXYGEN_CARRY_M);
@@ -152,7 +153,7 @@ proptest! {
         let drawn = zone.draw(&column).unwrap();
         let known = |z: f64| (carried_to..=carried_up).contains(&z);
         let missing = mean(&zone, &column, &|z| f64::from(u8::from(!known(z))));
-        prop_assert!((drawn.oxygen_missing_share - missing).abs() < 2e-3);
+        prop_assert!((drawn.oxygen_missing_share - missing).abs() < 1e-3);
         if missing > 0.052 {
             prop_assert_eq!(drawn.oxygen_mg_l, None);
         }
@@ -163,7 +164,7 @@ proptest! {
         let low = mean(&zone, &column, &|z| {
             f64::from(u8::from(column.reading(z).oxygen_mg_l.is_some_and(|oxygen| oxygen < 1.0)))
         });
-        prop_assert!((drawn.oxygen_low_share - low).abs() < 2e-3);
+        prop_assert!((drawn.oxygen_low_share - low).abs() < 1e-3);
     }
 
     #[test]

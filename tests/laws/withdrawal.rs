@@ -7,7 +7,7 @@ use gatemix::profile::{Column, OxygenSample, Sample};
 use gatemix::withdrawal::{End, Sink, Zone, boundary_factor, zone};
 use proptest::prelude::*;
 
-use crate::columns::{Pool, angle, any_water, config, flow, fresh, given, port, share, stable};
+use crate::columns::{Pool, angle, any_water, config, flow, fresh, given, port, share, slack, stable};
 
 const GRAVITY_M_S2: f64 = 9.80665;
 
@@ -64,15 +64,17 @@ proptest! {
         let sides = ends(&zone, &column);
         for (this, other) in [(0, 1), (1, 0)] {
             let (limit, bounded, wall) = sides[this];
-            let needed = if sides[other].1 {
-                bounded_flow(&column, [centre, flow, angle], limit, wall)
-            } else {
-                free_flow(&column, centre, angle, limit)
+            let relation = |z: f64| {
+                if sides[other].1 {
+                    bounded_flow(&column, [centre, flow, angle], z, wall)
+                } else {
+                    free_flow(&column, centre, angle, z)
+                }
             };
-            let over = needed / flow - 1.0;
-            // round-off of a density of 1000 kg/m3 beside the difference it leaves
+            let over = relation(limit) / flow - 1.0;
             let difference = (column.density_kg_m3(limit) - column.density_kg_m3(centre)).abs();
-            let slack = 1e-6 + 3e-13 / difference;
+            let further = relation(limit + 1e-8 * (limit - centre).signum());
+            let slack = slack(difference, further - relation(limit), flow);
             if bounded {
                 prop_assert!(limit == column.bed_m() || limit == column.surface_m());
                 prop_assert!(over < slack, "{} over", over);

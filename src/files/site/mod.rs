@@ -2,24 +2,40 @@
 
 mod outlets;
 
+use chrono::{Offset, Utc};
+
 use crate::problem::{Problem, any_refused};
 use crate::site::{ListedCast, Raw, RawPool, RawRow, RawTarget, SetNow, Site, WidthSource};
-use crate::units::{Dimension, Folder};
+use crate::units::{Dimension, Folder, System};
 
-use crate::files::cast::Column;
+use crate::files::cast::{Column, TIME_CURE, parse_time};
 use crate::files::cursor::{Map, Scalar, Value, Walk};
 use crate::files::yaml::{Document, Node};
 
+/// What a site file gave.
+#[derive(Debug, Clone)]
+pub struct Read {
+    /// The site; `None` when any problem refuses it.
+    pub site: Option<Site>,
+    /// Every problem, flag and note with file and line.
+    pub problems: Vec<Problem>,
+    /// The units its user reads, known even where the site is refused.
+    pub system: System,
+}
+
 /// Reads and checks the text of a site file. The list holds every problem, flag and note with file and line;
 /// the site is `None` when any refuses.
-pub fn site(text: &str, file: &str) -> (Option<Site>, Vec<Problem>) {
+pub fn site(text: &str, file: &str) -> Read {
     let document = match Document::parse(text) {
         Ok(document) => document,
-        Err(problem) => return (None, vec![problem.in_file(file)]),
+        Err(problem) => {
+            return Read { site: None, problems: vec![problem.in_file(file)], system: System::default() };
+        }
     };
     let walk = Walk::new(&document);
     let raw = walk.root().map().map(raw_site);
     let mut problems = walk.problems(file);
+    let system = raw.as_ref().map_or_else(System::default, |raw| raw.units.system());
     let checked = raw.and_then(|raw| {
         let (site, mut found) = Site::check(&raw);
         document.locate(&mut found, file);
@@ -28,7 +44,7 @@ pub fn site(text: &str, file: &str) -> (Option<Site>, Vec<Problem>) {
     });
     let site = if any_refused(&problems) { None } else { checked };
     problems.sort_by_key(|p| p.place.line.unwrap_or(0));
-    (site, problems)
+    Read { site, problems, system }
 }
 
 /// The folder's units and the quantities read in them.
@@ -39,7 +55,19 @@ struct In {
 impl In {
     fn quantity(&self, value: &Value, dimension: Dimension) -> Option<f64> {
         match value.scalar()? {
-            Scalar::Number(number) => Some(self.units.to_si(number, dimension)),
+            Scalar::Number(number) => {
+                let si = self.units.to_si(number, dimension);
+                if si.is_finite() {
+                    return Some(si);
+                }
+                let unit = self.units.unit(dimension);
+                value.report(Problem::refused(
+                    "quantity",
+                    format!("{number:e} {unit} is too large a {dimension}"),
+                    "correct the figure",
+                ));
+                None
+            }
             Scalar::Text(text) => match self.units.parse(text, dimension) {
                 Ok(si) => Some(si),
                 Err(error) => {
@@ -148,12 +176,21 @@ fn raw_site(map: Map) -> Raw {
     });
     raw.casts = each(&map, "casts", |m| ListedCast {
         file: m.required("file").and_then(|v| v.text()).unwrap_or_default().to_owned(),
-        taken: text(m, "taken"),
+        taken: m.optional("taken").and_then(|v| taken(&v)),
         pool_m: read.optional(m, "pool", Dimension::Length),
     });
     raw.demonstration = map.optional("demonstration").and_then(|v| v.boolean()).unwrap_or(false);
     map.finish();
     raw
+}
+
+/// When a listed cast was taken. It is read once the offset is known; here only that such a moment exists.
+fn taken(value: &Value) -> Option<String> {
+    let text = value.text()?;
+    if let Err(words) = parse_time(text, Utc.fix()) {
+        value.report(Problem::refused("time", words, TIME_CURE));
+    }
+    Some(text.to_owned())
 }
 
 /// One of our column names, as a logger's header is mapped to it.

@@ -38,7 +38,7 @@ pub(super) fn not_checked(answer: &MixAnswer) -> String {
     wrapped(&format!("Not checked: {}", answer.mix.not_checked.join(", ")), 13)
 }
 
-/// What is set, for each gate: `W3 600 cfs`.
+/// What is set, for each gate: `N3 600 cfs`.
 fn setting_words(site: &Site, setting: &Setting, system: System) -> String {
     let mut gates: Vec<(&str, f64)> = setting
         .gates

@@ -153,7 +153,7 @@ pub(super) fn spread(raw: &Raw, problems: &mut Vec<Problem>) {
         (c.oxygen_share, "oxygen_percent"),
         (c.stale_days, "stale_days"),
         (c.ageing_days, "ageing_days"),
-        (c.heat_w_m2, "heat"),
+        (c.heat_w_m2, "heat_w_m2"),
     ] {
         positive(Some(value), format!("checks.{key}"), key, problems);
     }

@@ -1,186 +1,24 @@
 //! Answers as JSON: SI whatever the display, absent is null, full precision.
 
+mod shape;
+
+use std::fmt::Write as _;
+
 use serde::Serialize;
 
 use crate::mix::{Drawn, Mix, TargetStanding};
-use crate::problem::{Problem, Weight};
+use crate::problem::{Problem, Weight, is_harmful};
 use crate::site::Site;
 use crate::tasks::{Context, MixAnswer, PoolAnswer};
 use crate::units::{System, in_system};
 use crate::withdrawal::{End, Opening};
 
+use shape::{
+    ColdJson, FlagJson, Head, LayeringJson, LevelJson, MixJson, NowJson, OutletJson, PoolJson, ProblemJson,
+    ProfileJson, ReleaseJson, TargetJson, WarningJson, ZoneJson,
+};
+
 use super::sentence::{METHOD, caution};
-
-#[derive(Serialize)]
-struct Head {
-    site: String,
-    demonstration: bool,
-    on: String,
-    on_from: &'static str,
-    datum: String,
-    version: &'static str,
-    method: &'static str,
-    fingerprint: String,
-    profile: ProfileJson,
-}
-
-#[derive(Serialize)]
-struct ProfileJson {
-    file: String,
-    taken: Option<String>,
-    age_days: Option<f64>,
-    pool_m: f64,
-    samples: usize,
-    flags: Vec<FlagJson>,
-    notes: Vec<FlagJson>,
-}
-
-#[derive(Serialize)]
-struct FlagJson {
-    row: Option<usize>,
-    kind: &'static str,
-    text: String,
-}
-
-#[derive(Serialize)]
-struct MixJson {
-    #[serde(flatten)]
-    head: Head,
-    levels: Vec<LevelJson>,
-    release: ReleaseJson,
-    targets: Vec<TargetJson>,
-    now: Option<NowJson>,
-    not_checked: Vec<String>,
-    warnings: Vec<WarningJson>,
-    caution: &'static str,
-}
-
-#[derive(Serialize)]
-struct NowJson {
-    set: std::collections::BTreeMap<String, f64>,
-    release: ReleaseJson,
-    targets: Vec<TargetJson>,
-}
-
-#[derive(Serialize)]
-struct LevelJson {
-    elevation_m: f64,
-    outlets: Vec<String>,
-    flow_m3s: f64,
-    angle_deg: Option<f64>,
-    zone: Option<ZoneJson>,
-    temperature_c: Option<f64>,
-    oxygen_mg_l: Option<f64>,
-}
-
-#[derive(Serialize)]
-struct ZoneJson {
-    lower_m: f64,
-    upper_m: f64,
-    thickness_m: f64,
-    peak_m: f64,
-    lower_end: &'static str,
-    upper_end: &'static str,
-    boundary_flow_lower_m3s: Option<f64>,
-    boundary_flow_upper_m3s: Option<f64>,
-}
-
-#[derive(Serialize)]
-struct ReleaseJson {
-    flow_m3s: f64,
-    temperature_c: f64,
-    oxygen_mg_l: Option<f64>,
-    band_c: Option<[f64; 2]>,
-    band_oxygen_mg_l: Option<[f64; 2]>,
-}
-
-#[derive(Serialize)]
-struct TargetJson {
-    name: String,
-    point: String,
-    statistic: &'static str,
-    basis: &'static str,
-    value_c: Option<f64>,
-    low_c: Option<f64>,
-    preferred_c: Option<f64>,
-    high_c: Option<f64>,
-    buffer_c: f64,
-    standing: &'static str,
-    by_c: Option<f64>,
-    oxygen_mg_l: Option<f64>,
-    oxygen_min_mg_l: Option<f64>,
-    oxygen_standing: &'static str,
-    oxygen_by_mg_l: Option<f64>,
-    share_inside: Option<f64>,
-    oxygen_share_inside: Option<f64>,
-    share_inside_both: Option<f64>,
-    governs: bool,
-    source: Option<String>,
-}
-
-#[derive(Serialize)]
-struct WarningJson {
-    kind: &'static str,
-    text: String,
-}
-
-#[derive(Serialize)]
-struct PoolJson {
-    #[serde(flatten)]
-    head: Head,
-    layering: LayeringJson,
-    cold_water: Vec<ColdJson>,
-    cold_water_above_m: Option<f64>,
-    outlets: Vec<OutletJson>,
-    caution: &'static str,
-}
-
-#[derive(Serialize)]
-struct LayeringJson {
-    surface_c: f64,
-    bed_c: f64,
-    difference_c: f64,
-    thermocline_m: Option<f64>,
-    thermocline_c_per_m: Option<f64>,
-    steeper_than_1_c_per_m: Option<[f64; 2]>,
-    mixed_base_m: f64,
-    buoyancy_s2: Option<f64>,
-    buoyancy_m: Option<f64>,
-    oxygen_min_mg_l: Option<f64>,
-    oxygen_min_m: Option<f64>,
-    volume_m3: f64,
-    mean_c: f64,
-    heat_j: f64,
-    schmidt_stability_j_m2: f64,
-}
-
-#[derive(Serialize)]
-struct ColdJson {
-    threshold_c: f64,
-    usable_m3: Option<f64>,
-    total_m3: f64,
-    unreachable_m3: Option<f64>,
-}
-
-#[derive(Serialize)]
-struct OutletJson {
-    name: String,
-    centre_m: f64,
-    submergence_m: f64,
-    min_submergence_m: Option<f64>,
-    wet: bool,
-}
-
-#[derive(Serialize)]
-struct ProblemJson {
-    weight: &'static str,
-    kind: &'static str,
-    file: Option<String>,
-    line: Option<usize>,
-    path: Option<String>,
-    text: String,
-    cure: String,
-}
 
 /// The answer of `mix`.
 pub fn mix(context: &Context, answer: &MixAnswer) -> String {
@@ -283,13 +121,29 @@ pub fn check(problems: &[Problem]) -> String {
 
 fn written(value: &impl Serialize) -> String {
     // these structs hold only strings, numbers and lists, which always have a JSON form
-    serde_json::to_string_pretty(value).map_or_else(
+    let text = serde_json::to_string_pretty(value).map(|text| escaped(&text));
+    text.map_or_else(
         |e| format!("{{\"error\":\"{e}\"}}\n"),
         |mut s| {
             s.push('\n');
             s
         },
     )
+}
+
+/// What a terminal may obey and JSON lets stand in a string, such as the C1 range, as `\u009b`.
+fn escaped(text: &str) -> String {
+    let mut out = String::with_capacity(text.len());
+    for c in text.chars() {
+        if c == '\n' || !is_harmful(c) {
+            out.push(c);
+        } else {
+            for unit in c.encode_utf16(&mut [0; 2]) {
+                let _ = write!(out, "\\u{unit:04x}");
+            }
+        }
+    }
+    out
 }
 
 fn head(context: &Context, more_flags: &[Problem]) -> Head {

@@ -1,0 +1,174 @@
+//! The shape of the answers: keys in the order they are written.
+
+use serde::Serialize;
+
+#[derive(Serialize)]
+pub(super) struct Head {
+    pub(super) site: String,
+    pub(super) demonstration: bool,
+    pub(super) on: String,
+    pub(super) on_from: &'static str,
+    pub(super) datum: String,
+    pub(super) version: &'static str,
+    pub(super) method: &'static str,
+    pub(super) fingerprint: String,
+    pub(super) profile: ProfileJson,
+}
+
+#[derive(Serialize)]
+pub(super) struct ProfileJson {
+    pub(super) file: String,
+    pub(super) taken: Option<String>,
+    pub(super) age_days: Option<f64>,
+    pub(super) pool_m: f64,
+    pub(super) samples: usize,
+    pub(super) flags: Vec<FlagJson>,
+    pub(super) notes: Vec<FlagJson>,
+}
+
+#[derive(Serialize)]
+pub(super) struct FlagJson {
+    pub(super) row: Option<usize>,
+    pub(super) kind: &'static str,
+    pub(super) text: String,
+}
+
+#[derive(Serialize)]
+pub(super) struct MixJson {
+    #[serde(flatten)]
+    pub(super) head: Head,
+    pub(super) levels: Vec<LevelJson>,
+    pub(super) release: ReleaseJson,
+    pub(super) targets: Vec<TargetJson>,
+    pub(super) now: Option<NowJson>,
+    pub(super) not_checked: Vec<String>,
+    pub(super) warnings: Vec<WarningJson>,
+    pub(super) caution: &'static str,
+}
+
+#[derive(Serialize)]
+pub(super) struct NowJson {
+    pub(super) set: std::collections::BTreeMap<String, f64>,
+    pub(super) release: ReleaseJson,
+    pub(super) targets: Vec<TargetJson>,
+}
+
+#[derive(Serialize)]
+pub(super) struct LevelJson {
+    pub(super) elevation_m: f64,
+    pub(super) outlets: Vec<String>,
+    pub(super) flow_m3s: f64,
+    pub(super) angle_deg: Option<f64>,
+    pub(super) zone: Option<ZoneJson>,
+    pub(super) temperature_c: Option<f64>,
+    pub(super) oxygen_mg_l: Option<f64>,
+}
+
+#[derive(Serialize)]
+pub(super) struct ZoneJson {
+    pub(super) lower_m: f64,
+    pub(super) upper_m: f64,
+    pub(super) thickness_m: f64,
+    pub(super) peak_m: f64,
+    pub(super) lower_end: &'static str,
+    pub(super) upper_end: &'static str,
+    pub(super) boundary_flow_lower_m3s: Option<f64>,
+    pub(super) boundary_flow_upper_m3s: Option<f64>,
+}
+
+#[derive(Serialize)]
+pub(super) struct ReleaseJson {
+    pub(super) flow_m3s: f64,
+    pub(super) temperature_c: f64,
+    pub(super) oxygen_mg_l: Option<f64>,
+    pub(super) band_c: Option<[f64; 2]>,
+    pub(super) band_oxygen_mg_l: Option<[f64; 2]>,
+}
+
+#[derive(Serialize)]
+pub(super) struct TargetJson {
+    pub(super) name: String,
+    pub(super) point: String,
+    pub(super) statistic: &'static str,
+    pub(super) basis: &'static str,
+    pub(super) value_c: Option<f64>,
+    pub(super) low_c: Option<f64>,
+    pub(super) preferred_c: Option<f64>,
+    pub(super) high_c: Option<f64>,
+    pub(super) buffer_c: f64,
+    pub(super) standing: &'static str,
+    pub(super) by_c: Option<f64>,
+    pub(super) oxygen_mg_l: Option<f64>,
+    pub(super) oxygen_min_mg_l: Option<f64>,
+    pub(super) oxygen_standing: &'static str,
+    pub(super) oxygen_by_mg_l: Option<f64>,
+    pub(super) share_inside: Option<f64>,
+    pub(super) oxygen_share_inside: Option<f64>,
+    pub(super) share_inside_both: Option<f64>,
+    pub(super) governs: bool,
+    pub(super) source: Option<String>,
+}
+
+#[derive(Serialize)]
+pub(super) struct WarningJson {
+    pub(super) kind: &'static str,
+    pub(super) text: String,
+}
+
+#[derive(Serialize)]
+pub(super) struct PoolJson {
+    #[serde(flatten)]
+    pub(super) head: Head,
+    pub(super) layering: LayeringJson,
+    pub(super) cold_water: Vec<ColdJson>,
+    pub(super) cold_water_above_m: Option<f64>,
+    pub(super) outlets: Vec<OutletJson>,
+    pub(super) caution: &'static str,
+}
+
+#[derive(Serialize)]
+pub(super) struct LayeringJson {
+    pub(super) surface_c: f64,
+    pub(super) bed_c: f64,
+    pub(super) difference_c: f64,
+    pub(super) thermocline_m: Option<f64>,
+    pub(super) thermocline_c_per_m: Option<f64>,
+    pub(super) steeper_than_1_c_per_m: Option<[f64; 2]>,
+    pub(super) mixed_base_m: f64,
+    pub(super) buoyancy_s2: Option<f64>,
+    pub(super) buoyancy_m: Option<f64>,
+    pub(super) oxygen_min_mg_l: Option<f64>,
+    pub(super) oxygen_min_m: Option<f64>,
+    pub(super) volume_m3: f64,
+    pub(super) mean_c: f64,
+    pub(super) heat_j: f64,
+    pub(super) schmidt_stability_j_m2: f64,
+}
+
+#[derive(Serialize)]
+pub(super) struct ColdJson {
+    pub(super) threshold_c: f64,
+    pub(super) usable_m3: Option<f64>,
+    pub(super) total_m3: f64,
+    pub(super) unreachable_m3: Option<f64>,
+}
+
+#[derive(Serialize)]
+pub(super) struct OutletJson {
+    pub(super) name: String,
+    pub(super) centre_m: f64,
+    pub(super) submergence_m: f64,
+    pub(super) min_submergence_m: Option<f64>,
+    pub(super) wet: bool,
+}
+
+#[derive(Serialize)]
+pub(super) struct ProblemJson {
+    pub(super) weight: &'static str,
+    pub(super) kind: &'static str,
+    pub(super) file: Option<String>,
+    pub(super) line: Option<usize>,
+    pub(super) path: Option<String>,
+    pub(super) text: String,
+    pub(super) cure: String,
+}
