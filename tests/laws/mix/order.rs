@@ -1,11 +1,10 @@
 //! The order of gates, of outlets in the file and of `--set` changes nothing.
 
-use chrono::{DateTime, Utc};
 use gatemix::mix::{Blend, Drawn, Gate, Mix, Spread, TargetStanding, refusals};
 use gatemix::problem::Problem;
 use gatemix::report::{json, text};
 use gatemix::site::Site;
-use gatemix::tasks::{self, Asked, Failure};
+use gatemix::tasks::{self, Asked, Context, Failure, MixAnswer};
 use proptest::prelude::*;
 
 use super::sites::{Case, Kinds, cases};
@@ -65,10 +64,6 @@ proptest! {
     }
 }
 
-fn moment() -> DateTime<Utc> {
-    "2026-07-14T18:30:00Z".parse().unwrap()
-}
-
 /// Every order of a few words.
 fn orders(words: &[&str]) -> Vec<Vec<String>> {
     let Some((first, rest)) = words.split_first() else { return vec![Vec::new()] };
@@ -83,20 +78,64 @@ fn orders(words: &[&str]) -> Vec<Vec<String>> {
     out
 }
 
-/// Through the task, on a demonstration site, with several limits of several gates broken at once.
+const SITE: &str = "
+name: Invented
+units: { length: m, area: m2, volume: m3, flow: m3/s, temperature: C }
+pool:
+  bed: 0
+  full: 60
+  table: [[0, 1e5, 0], [62, 2e6, 6.51e7]]
+wells:
+  - { name: Shaft, conduit: 2, max_open: 2, max_flow: 15 }
+outlets:
+  - { name: B, well: Shaft, centre: 50, height: 2, width: 3, min_submergence: 12, flow: { min: 4, max: 30 } }
+  - { name: C, well: Shaft, centre: 40, height: 2, width: 3, flow: { min: 4, max: 30 } }
+  - { name: A, well: Shaft, centre: 39.5, height: 2, width: 3, flow: { min: 4, max: 30 } }
+  - { name: Sluice, centre: 8, height: 2, width: 2, flow: { min: 4, max: 30 } }
+release: { min: 50, max: 60 }
+";
+const CAST: &str = "# taken: 2026-07-14T10:30
+# pool: 60
+elevation_m,temperature_C,oxygen_mg_l
+0,6,1
+30,8,5
+45,15,7
+60,24,8
+";
+
+/// Each order of the words, through the task, on a site written to disk.
+fn asked<T>(
+    pool: Option<&str>,
+    words: &[&str],
+    told: impl Fn(&Context, Result<MixAnswer, Failure>) -> T,
+) -> Vec<T> {
+    let folder = tempfile::tempdir().unwrap();
+    std::fs::write(folder.path().join("site.yaml"), SITE).unwrap();
+    std::fs::write(folder.path().join("cast.csv"), CAST).unwrap();
+    let path = |file: &str| Some(folder.path().join(file).display().to_string());
+    let pool = pool.map(str::to_owned);
+    let asked = Asked { site: path(""), profile: path("cast.csv"), pool, ..Asked::default() };
+    let context = tasks::open(&asked, "2026-07-14T18:30:00Z".parse().unwrap()).unwrap();
+    orders(words).iter().map(|sets| told(&context, tasks::mix(&context, sets))).collect()
+}
+
+/// Several limits of several gates are broken at once.
 #[test]
 fn scenario_the_order_of_set_changes_no_byte() {
-    let context = tasks::open(&Asked { site: Some("ashlar".into()), ..Asked::default() }, moment()).unwrap();
-    let words = ["W1=90cfs", "E2=80cfs", "W4=70.1cfs", "W5=333.3cfs"];
-    let shown: Vec<[String; 2]> = orders(&words)
-        .iter()
-        .map(|sets| {
-            let answer = tasks::mix(&context, sets).unwrap();
-            [json::mix(&context, &answer), text::mix(&context, &answer)]
-        })
-        .collect();
+    let shown = asked(None, &["A=3.1", "C=3.3", "B=10.7", "Sluice=2"], |context, answer| {
+        let answer = answer.unwrap();
+        [json::mix(context, &answer), text::mix(context, &answer)]
+    });
     assert_eq!(shown.len(), 24);
-    for what in ["flow.min of `W1`", "flow.min of `E2`", "flow.min of `W4`", "max_open of well `West`"] {
+    for what in [
+        "flow.min of `A`",
+        "flow.min of `C`",
+        "flow.min of `Sluice`",
+        "min_submergence of `B`",
+        "max_open of well `Shaft`",
+        "max_flow of well `Shaft`",
+        "release.min",
+    ] {
         assert!(shown[0][0].contains(what), "{what} is broken");
     }
     assert!(shown.iter().all(|s| *s == shown[0]));
@@ -104,14 +143,11 @@ fn scenario_the_order_of_set_changes_no_byte() {
 
 #[test]
 fn scenario_the_order_of_set_changes_no_refusal() {
-    let asked = Asked { site: Some("ashlar".into()), pool: Some("1440ft".into()), ..Asked::default() };
-    let context = tasks::open(&asked, moment()).unwrap();
-    let words = ["W1=90cfs", "E1=80cfs", "W4=7000cfs", "E5=333.3cfs"];
-    let refused = |sets: &Vec<String>| match tasks::mix(&context, sets) {
+    let all = asked(Some("39.8"), &["Sluice=31", "C=5", "A=31", "B=5"], |_, answer| match answer {
         Err(Failure::Refused(problems, _)) => problems,
         other => panic!("{other:?}"),
-    };
-    let all: Vec<Vec<Problem>> = orders(&words).iter().map(refused).collect();
-    assert_eq!(all[0].iter().map(|p| p.kind).collect::<Vec<_>>(), ["dry", "dry", "capacity"]);
+    });
+    assert_eq!(all.len(), 24);
+    assert_eq!(all[0].iter().map(|p| p.kind).collect::<Vec<_>>(), ["capacity", "dry", "dry", "capacity"]);
     assert!(all.iter().all(|problems| *problems == all[0]));
 }
