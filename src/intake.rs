@@ -2,7 +2,7 @@
 //!
 //! Methods: `docs/methods.md`, section 4.
 
-use crate::site::{Kind, Outlet, Site};
+use crate::site::{Kind, Leakage, Outlet, Site};
 use crate::water::G_M_S2;
 use crate::withdrawal::free_crest_flow_m3s;
 
@@ -71,20 +71,26 @@ pub fn spills_by_itself(outlet: &Outlet) -> bool {
 }
 
 /// Area of the port that would leak as a shut gate does, always open, m2: q_ref sqrt(K/(2 g h_ref)).
-pub fn leak_area_m2(outlet: &Outlet) -> f64 {
+/// `place` as in [`leak_m3s`].
+pub fn leak_area_m2(outlet: &Outlet, place: f64) -> f64 {
     let loss = outlet.loss.unwrap_or(ASSUMED_LOSS);
-    outlet.leakage.map_or(0.0, |leak| leak.flow_m3s * (loss / (2.0 * G_M_S2 * leak.head_m)).sqrt())
+    let area = |leak: Leakage| reference_leak_m3s(leak, place) * (loss / (2.0 * G_M_S2 * leak.head_m)).sqrt();
+    outlet.leakage.map_or(0.0, area)
 }
 
 /// Leak of a shut gate under a head, m3/s: a port always open, so it goes as the root of the head.
 /// `place` from 0 to 1 moves within the range the site gives about its figure; 0.5 is the figure itself.
 pub fn leak_m3s(outlet: &Outlet, head_m: f64, place: f64) -> f64 {
-    let Some(leak) = outlet.leakage else { return 0.0 };
+    let leak = |leak: Leakage| reference_leak_m3s(leak, place) * (head_m.max(0.0) / leak.head_m).sqrt();
+    outlet.leakage.map_or(0.0, leak)
+}
+
+/// Leak at the reference head, m3/s.
+fn reference_leak_m3s(leak: Leakage, place: f64) -> f64 {
     let (low, high) = leak.range_m3s.unwrap_or((leak.flow_m3s, leak.flow_m3s));
-    let reference = if place < 0.5 {
+    if place < 0.5 {
         low + (leak.flow_m3s - low) * place * 2.0
     } else {
         leak.flow_m3s + (high - leak.flow_m3s) * (place - 0.5) * 2.0
-    };
-    reference * (head_m.max(0.0) / leak.head_m).sqrt()
+    }
 }

@@ -14,6 +14,8 @@ mod continuity;
 mod crest;
 #[path = "laws/levelling.rs"]
 mod levelling;
+#[path = "laws/mix/mod.rs"]
+mod mix;
 #[path = "laws/shape.rs"]
 mod shape;
 #[path = "laws/withdrawal.rs"]

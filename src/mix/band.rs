@@ -93,11 +93,13 @@ pub struct Spread {
 }
 
 impl Perturbed {
-    /// Prepares the members' columns for a profile of some age in days (0 when unknown).
+    /// Prepares the members' columns for a profile of some age in days (0 when unknown). The layers heave as far
+    /// after a cast as before it, so a cast later than the decision counts by its distance.
     pub fn new(site: &Site, profile: &Profile, age_days: f64) -> Self {
-        let sd =
-            (site.band.heave_m + site.band.heave_m_per_day * age_days.max(0.0)).min(site.band.heave_max_m);
-        let knee = knee_m(profile);
+        let sd = (site.band.heave_m + site.band.heave_m_per_day * age_days.abs()).min(site.band.heave_max_m);
+        // without oxygen, so that where that was read does not move the layers
+        let water = Profile::column_of(site, profile.pool_m, &profile.samples, &[]);
+        let knee = knee_m(water.as_ref().unwrap_or(&profile.column));
         let cases = members(&site.band)
             .into_iter()
             .filter_map(|m| {
@@ -146,12 +148,13 @@ impl Perturbed {
                     release_joined(column, &drawn, &overlaps, m.zone_factor).unwrap_or(apart)
                 };
                 let between = |a: f64, b: f64| a + m.joined * (b - a);
-                let temperature =
-                    widen(between(apart.temperature_c, joined.temperature_c), centre.temperature_c)
-                        + m.release_c;
+                let temperature = widen(
+                    between(apart.temperature_c, joined.temperature_c) + m.release_c,
+                    centre.temperature_c,
+                );
                 let oxygen = apart.oxygen_mg_l.zip(joined.oxygen_mg_l).map(|(a, b)| {
                     let value = between(a, b);
-                    (widen(value, centre.oxygen_mg_l.unwrap_or(value)) + m.release_mg_l).max(0.0)
+                    widen(value + m.release_mg_l, centre.oxygen_mg_l.unwrap_or(value)).max(0.0)
                 });
                 Some((temperature, oxygen))
             })
@@ -161,10 +164,8 @@ impl Perturbed {
 }
 
 /// Elevation whose water heaves most: where density changes fastest, else the base of the mixed layer, m.
-fn knee_m(profile: &Profile) -> f64 {
-    greatest_buoyancy(&profile.column)
-        .filter(|b| b.0 > 0.0)
-        .map_or_else(|| mixed_base_m(&profile.column), |b| b.1)
+fn knee_m(column: &Column) -> f64 {
+    greatest_buoyancy(column).filter(|b| b.0 > 0.0).map_or_else(|| mixed_base_m(column), |b| b.1)
 }
 
 /// Heave: the knee moves by `by`, surface and bed stay, between them the movement falls off linearly. Held to

@@ -72,25 +72,22 @@ pub fn release(drawn: &[Drawn]) -> Option<Blend> {
     blend(&streams)
 }
 
-/// Groups of levels whose centre-lines lie inside each other's zones, as indices into `drawn`.
+/// Groups of levels whose centre-lines lie inside each other's zones, as indices into `drawn`. A thin zone between
+/// two thick ones that overlap stays out of their group.
 pub fn overlapping(drawn: &[Drawn]) -> Vec<Vec<usize>> {
-    let within = |a: &Drawn, b: &Drawn| {
-        a.zone.is_some_and(|z| (z.lower.limit_m..=z.upper.limit_m).contains(&b.level.sink.centre_m))
+    let reaches = |a: usize, b: usize| {
+        let centre = drawn[b].level.sink.centre_m;
+        drawn[a].zone.is_some_and(|z| (z.lower.limit_m..=z.upper.limit_m).contains(&centre))
     };
-    // levels stand in order of elevation and zones are intervals, so neighbours suffice to link a group
     let mut groups: Vec<Vec<usize>> = Vec::new();
-    for i in 0..drawn.len() {
-        if drawn[i].zone.is_none() {
-            continue;
-        }
-        match groups.last_mut() {
-            Some(group)
-                if group.iter().any(|&k| within(&drawn[k], &drawn[i]) && within(&drawn[i], &drawn[k])) =>
-            {
-                group.push(i);
-            }
-            _ => groups.push(vec![i]),
-        }
+    for i in (0..drawn.len()).filter(|&i| drawn[i].zone.is_some()) {
+        // a level can link two groups; they then become one
+        let (linked, apart): (Vec<_>, Vec<_>) =
+            groups.into_iter().partition(|g| g.iter().any(|&k| reaches(k, i) && reaches(i, k)));
+        groups = apart;
+        let mut joined: Vec<usize> = linked.into_iter().flatten().chain([i]).collect();
+        joined.sort_unstable();
+        groups.push(joined);
     }
     groups.retain(|g| g.len() > 1);
     groups

@@ -5,7 +5,7 @@ use chrono::NaiveDate;
 use crate::intake;
 use crate::problem::Problem;
 use crate::profile::Profile;
-use crate::site::Site;
+use crate::site::{Outlet, Site};
 use crate::target::{Standing, Target};
 use crate::units::say;
 use crate::withdrawal::CrestForm;
@@ -13,7 +13,7 @@ use crate::withdrawal::CrestForm;
 use super::band::{Perturbed, Spread};
 use super::beware;
 use super::blend::{Blend, Drawn, draw_levels, release};
-use super::levels::{Setting, groups, levels};
+use super::levels::{Gate, Setting, groups, levels};
 
 /// Flow over an ungated crest set by hand may differ from its rating by this share (choice).
 const CREST_SHARE: f64 = 0.05;
@@ -65,12 +65,19 @@ pub struct Mix {
     pub warnings: Vec<Problem>,
 }
 
+/// Gates of a setting with their outlets, by name: the order in which they were typed shows nowhere.
+fn by_name<'a>(site: &'a Site, setting: &'a Setting) -> Vec<(&'a Gate, &'a Outlet)> {
+    let mut gates: Vec<(&Gate, &Outlet)> =
+        setting.gates.iter().filter_map(|g| Some((g, site.outlets.get(g.outlet)?))).collect();
+    gates.sort_by(|a, b| a.1.name.cmp(&b.1.name));
+    gates
+}
+
 /// What makes a setting impossible under a pool: a gate out of the water, a flow above capacity. A pool below a
 /// gate is no error in itself; naming that gate in a setting is.
 pub fn refusals(site: &Site, setting: &Setting, pool_m: f64) -> Vec<Problem> {
     let mut out = Vec::new();
-    for gate in &setting.gates {
-        let Some(outlet) = site.outlets.get(gate.outlet) else { continue };
+    for (gate, outlet) in by_name(site, setting) {
         let name = &outlet.name;
         if !intake::is_wet(outlet, gate.opening, pool_m) {
             let centre = outlet.open_part(gate.opening).centre_m;
@@ -193,8 +200,7 @@ fn standings(site: &Site, release: &Blend, spread: &Spread, date: NaiveDate) -> 
 fn limits(site: &Site, setting: &Setting, pool_m: f64, release: &Blend, warnings: &mut Vec<Problem>) {
     let mut broken = |words: String, cure: &str| warnings.push(Problem::flag("limit", words, cure));
     let mut wells = vec![(0.0_f64, 0_usize); site.wells.len()];
-    for gate in &setting.gates {
-        let Some(outlet) = site.outlets.get(gate.outlet) else { continue };
+    for (gate, outlet) in by_name(site, setting) {
         let name = &outlet.name;
         let depth = intake::submergence_m(outlet, gate.opening, pool_m);
         if let Some(least) = outlet.min_submergence_m
@@ -269,9 +275,8 @@ fn limits(site: &Site, setting: &Setting, pool_m: f64, release: &Blend, warnings
 /// Limits nobody gave, and those this version does not judge, by name.
 fn not_checked(site: &Site, setting: &Setting) -> Vec<String> {
     let mut out = Vec::new();
-    let mut used: Vec<usize> = setting.gates.iter().map(|g| g.outlet).collect();
-    used.sort_unstable_by_key(|&i| site.outlets.get(i).map(|o| o.name.clone()));
-    for outlet in used.iter().filter_map(|&i| site.outlets.get(i)) {
+    let used = by_name(site, setting);
+    for (_, outlet) in &used {
         if outlet.min_submergence_m.is_none() {
             out.push(format!("min_submergence of {}", outlet.name));
         }
@@ -279,7 +284,7 @@ fn not_checked(site: &Site, setting: &Setting) -> Vec<String> {
             out.push(format!("flow.max of {}", outlet.name));
         }
     }
-    let mut wells: Vec<usize> = used.iter().filter_map(|&i| site.outlets.get(i)?.well).collect();
+    let mut wells: Vec<usize> = used.iter().filter_map(|(_, outlet)| outlet.well).collect();
     wells.sort_unstable_by_key(|&w| &site.wells[w].name);
     wells.dedup();
     for well in wells.iter().map(|&w| &site.wells[w]) {

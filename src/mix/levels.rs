@@ -91,8 +91,7 @@ fn linked(a: &Outlet, b: &Outlet) -> bool {
 /// [`intake::leak_m3s`]; `form` is the relation crests use.
 ///
 /// A level's elevation is the area-weighted mean of its open parts. A leak of a direct outlet leaves the dam
-/// beside the set flows; a leak into a well is part of what its conduit carries, so the open gates of that well
-/// give up as much.
+/// beside the set flows; a leak into a well is part of what its conduit carries.
 pub fn levels(
     site: &Site,
     groups: &[Vec<usize>],
@@ -101,11 +100,13 @@ pub fn levels(
     leak_place: f64,
     form: CrestForm,
 ) -> Vec<Level> {
-    let flows = with_leaks(site, setting, pool_m, leak_place);
+    let flows = with_leaks(site, groups, setting, pool_m, leak_place);
     groups
         .iter()
         .filter_map(|group| {
-            let mut sums = [0.0_f64; 4]; // area, area x elevation, flow, crest length
+            let mut first_m = None; // so that equal centre-lines have that one as their mean, to the last digit
+            let mut sums = [0.0_f64; 3]; // area, area x elevation above the first, flow
+            let mut lengths_m = [0.0_f64; 2]; // of open and of leaking crests
             let mut outlets = Vec::new();
             let mut height_m = 0.0_f64;
             for &index in group {
@@ -113,75 +114,88 @@ pub fn levels(
                 let outlet = &site.outlets[index];
                 let leaking = opening <= 0.0;
                 let part = outlet.open_part(if leaking { 1.0 } else { opening });
-                let area = if leaking { intake::leak_area_m2(outlet) } else { part.area_m2 };
+                let area = if leaking { intake::leak_area_m2(outlet, leak_place) } else { part.area_m2 };
                 sums[0] += area;
-                sums[1] += area * part.centre_m;
+                sums[1] += area * (part.centre_m - *first_m.get_or_insert(part.centre_m));
                 sums[2] += flow;
                 if let Kind::Crest { length_m, .. } = outlet.kind {
-                    sums[3] += length_m;
+                    lengths_m[usize::from(leaking)] += length_m;
                 }
                 height_m = height_m.max(part.height_m);
                 outlets.push(index);
             }
             let first = *outlets.first()?;
             let opening = if site.outlets[first].is_crest() {
-                Opening::Crest { length_m: sums[3], form }
+                // a leak beside an open crest does not make that crest longer
+                let [open, leaking] = lengths_m;
+                Opening::Crest { length_m: if open > 0.0 { open } else { leaking }, form }
             } else {
                 Opening::Port { angle_rad: site.outlets[first].angle_rad }
             };
-            let sink = Sink { centre_m: sums[1] / sums[0], flow_m3s: sums[2], opening };
+            let sink = Sink { centre_m: first_m? + sums[1] / sums[0], flow_m3s: sums[2], opening };
             Some(Level { outlets, sink, height_m })
         })
         .collect()
 }
 
-/// Opening and flow of every outlet that gives or could give water: set, spilling by itself, or leaking.
-fn with_leaks(site: &Site, setting: &Setting, pool_m: f64, leak_place: f64) -> Vec<Option<(f64, f64)>> {
+/// Opening and flow of every outlet that gives or could give water: set or leaking.
+///
+/// All ports of a well share its total in proportion to what they would pass at the head of the set flows; for one
+/// open gate that is the exact split by area and loss. Sums run in the order of the groups, never of the file.
+fn with_leaks(
+    site: &Site,
+    groups: &[Vec<usize>],
+    setting: &Setting,
+    pool_m: f64,
+    leak_place: f64,
+) -> Vec<Option<(f64, f64)>> {
     let mut flows: Vec<Option<(f64, f64)>> = vec![None; site.outlets.len()];
     for gate in &setting.gates {
         if let Some(slot) = flows.get_mut(gate.outlet) {
             *slot = Some((gate.opening, gate.flow_m3s));
         }
     }
+    let order: Vec<(usize, &Outlet)> = groups.iter().flatten().map(|&i| (i, &site.outlets[i])).collect();
     // the head across a well's gates, from the loss of the hardest driven open one
-    let mut well_head = vec![0.0_f64; site.wells.len()];
-    for (outlet, flow) in site.outlets.iter().zip(&flows) {
-        if let (Some(well), Some((opening, flow))) = (outlet.well, flow) {
-            let area = outlet.open_part(*opening).area_m2;
+    let mut wells = vec![Drained::default(); site.wells.len()];
+    for &(i, outlet) in &order {
+        if let (Some(well), Some((opening, flow))) = (outlet.well, flows[i]) {
+            let area = outlet.open_part(opening).area_m2;
             let loss = outlet.loss.unwrap_or(intake::ASSUMED_LOSS);
-            well_head[well] = well_head[well].max(loss * (flow / area).powi(2) / (2.0 * G_M_S2));
+            let head = loss * (flow / area).powi(2) / (2.0 * G_M_S2);
+            wells[well].head_m = wells[well].head_m.max(head);
+            wells[well].set_m3s += flow;
         }
     }
-    let mut well_leak = vec![0.0_f64; site.wells.len()];
-    for (outlet, slot) in site.outlets.iter().zip(&mut flows) {
-        if slot.is_some() || outlet.leakage.is_none() || outlet.centre_m >= pool_m {
+    for &(i, outlet) in &order {
+        if flows[i].is_some() || outlet.centre_m >= pool_m {
             continue;
         }
-        let head = outlet.well.map_or(pool_m - outlet.centre_m, |w| well_head[w]);
+        let head = outlet.well.map_or(pool_m - outlet.centre_m, |w| wells[w].head_m);
         let leak = intake::leak_m3s(outlet, head, leak_place);
         if leak > 0.0 {
-            *slot = Some((0.0, leak));
+            flows[i] = Some((0.0, leak));
             if let Some(well) = outlet.well {
-                well_leak[well] += leak;
+                wells[well].leaks_m3s += leak;
             }
         }
     }
-    for (well, leak) in well_leak.iter().enumerate().filter(|(_, leak)| **leak > 0.0) {
-        let mut open: Vec<&mut (f64, f64)> = site
-            .outlets
-            .iter()
-            .zip(&mut flows)
-            .filter(|(o, _)| o.well == Some(well))
-            .filter_map(|(_, slot)| slot.as_mut())
-            .filter(|slot| slot.0 > 0.0)
-            .collect();
-        let total: f64 = open.iter().map(|slot| slot.1).sum();
-        let kept = if total > 0.0 { ((total - leak) / total).max(0.0) } else { 1.0 };
-        for slot in &mut open {
-            slot.1 *= kept;
+    for &(i, outlet) in &order {
+        if let (Some(well), Some(slot)) = (outlet.well.map(|w| wells[w]), flows[i].as_mut())
+            && well.leaks_m3s > 0.0
+        {
+            slot.1 *= well.set_m3s / (well.set_m3s + well.leaks_m3s);
         }
     }
     flows
+}
+
+/// What a well carries: the flows set at its gates, the leaks at the head those need.
+#[derive(Clone, Copy, Default)]
+struct Drained {
+    head_m: f64,
+    set_m3s: f64,
+    leaks_m3s: f64,
 }
 
 /// Several levels as one sink at their flow-weighted elevation; a crest among them draws as a port in a face.

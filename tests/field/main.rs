@@ -6,6 +6,7 @@
 //! Reclamation, doi:10.5066/P9O3IPG3 (U.S. public domain). `sonde_casts.csv`: Jones and others 2023,
 //! Environmental Data Initiative edi.1544.1 (CC BY 4.0).
 
+mod binary;
 mod folder;
 mod pairs;
 mod sonde;

@@ -13,63 +13,63 @@ use serde::Deserialize;
 use crate::folder::{folder, rows, sound};
 
 /// One centre-line of all eight units; the other outlets carried under a tenth of the flow.
-const INTAKE_M: f64 = 1057.7;
+pub(crate) const INTAKE_M: f64 = 1057.7;
 /// About where the bed lies at the dam.
-const BED_M: f64 = 960.0;
+pub(crate) const BED_M: f64 = 960.0;
 /// Full pool as far as these casts need it: above the highest of them, inside the table.
-const FULL_M: f64 = 1127.0;
+pub(crate) const FULL_M: f64 = 1127.0;
 /// Invented: the size of the opening does not enter a point sink, only the warning of a thin zone.
-const OPENING_M: (f64, f64) = (5.0, 30.0);
+pub(crate) const OPENING_M: (f64, f64) = (5.0, 30.0);
 
 #[derive(Deserialize)]
-struct TableRow {
-    elev_ft: f64,
-    capacity_af: f64,
-    area_ac: f64,
+pub(crate) struct TableRow {
+    pub(crate) elev_ft: f64,
+    pub(crate) capacity_af: f64,
+    pub(crate) area_ac: f64,
 }
 
 #[derive(Deserialize)]
-struct CastRow {
-    trip_id: String,
-    depth_m: f64,
-    sample_elev_m: f64,
-    temp_c: Option<f64>,
-    do_mgl: Option<f64>,
-    spcond_us_cm: Option<f64>,
+pub(crate) struct CastRow {
+    pub(crate) trip_id: String,
+    pub(crate) depth_m: f64,
+    pub(crate) sample_elev_m: f64,
+    pub(crate) temp_c: Option<f64>,
+    pub(crate) do_mgl: Option<f64>,
+    pub(crate) spcond_us_cm: Option<f64>,
 }
 
 #[derive(Deserialize)]
-struct PairRow {
-    trip_id: String,
-    release_datetime: String,
-    profile_date: NaiveDate,
-    lake_elev_m: f64,
-    release_temp_c: f64,
-    release_do_mgl: f64,
-    power_cfs: f64,
+pub(crate) struct PairRow {
+    pub(crate) trip_id: String,
+    pub(crate) release_datetime: String,
+    pub(crate) profile_date: NaiveDate,
+    pub(crate) lake_elev_m: f64,
+    pub(crate) release_temp_c: f64,
+    pub(crate) release_do_mgl: f64,
+    pub(crate) power_cfs: f64,
 }
 
 /// Where a sample is taken to lie: at its depth below the pool, or at the elevation the file rounds to 0.1 m.
 #[derive(Clone, Copy, PartialEq)]
-enum Place {
+pub(crate) enum Place {
     Depth,
     Elevation,
 }
 
 /// Measured and computed release of one pair.
-struct Pair {
-    trip: String,
-    measured_c: f64,
-    computed_c: f64,
-    at_intake_c: f64,
-    band_c: (f64, f64),
-    measured_mg_l: f64,
-    computed_mg_l: f64,
-    band_mg_l: (f64, f64),
+pub(crate) struct Pair {
+    pub(crate) trip: String,
+    pub(crate) measured_c: f64,
+    pub(crate) computed_c: f64,
+    pub(crate) at_intake_c: f64,
+    pub(crate) band_c: (f64, f64),
+    pub(crate) measured_mg_l: f64,
+    pub(crate) computed_mg_l: f64,
+    pub(crate) band_mg_l: (f64, f64),
 }
 
 impl Pair {
-    fn inside(&self) -> bool {
+    pub(crate) fn inside(&self) -> bool {
         (self.band_c.0..=self.band_c.1).contains(&self.measured_c)
     }
 
@@ -148,7 +148,7 @@ fn pair(site: &Site, row: &PairRow, casts: &[CastRow], place: Place, conductance
     }
 }
 
-fn pairs(folder: &Path, place: Place, conductance: bool) -> Vec<Pair> {
+pub(crate) fn pairs(folder: &Path, place: Place, conductance: bool) -> Vec<Pair> {
     let site = site(folder);
     let casts: Vec<CastRow> = rows(folder, "forebay_casts.csv", 661);
     rows::<PairRow>(folder, "release_pairs.csv", 15)
@@ -159,9 +159,9 @@ fn pairs(folder: &Path, place: Place, conductance: bool) -> Vec<Pair> {
 
 /// Bias and root mean square of measured less computed.
 #[derive(Debug, Clone, Copy)]
-struct Misfit {
-    bias: f64,
-    rmse: f64,
+pub(crate) struct Misfit {
+    pub(crate) bias: f64,
+    pub(crate) rmse: f64,
 }
 
 fn misfit(pairs: &[Pair], missed: impl Fn(&Pair) -> f64) -> Misfit {
@@ -170,11 +170,11 @@ fn misfit(pairs: &[Pair], missed: impl Fn(&Pair) -> f64) -> Misfit {
     Misfit { bias: mean(&|e| e), rmse: mean(&|e| e * e).sqrt() }
 }
 
-fn temperature(pairs: &[Pair]) -> Misfit {
+pub(crate) fn temperature(pairs: &[Pair]) -> Misfit {
     misfit(pairs, |p| p.measured_c - p.computed_c)
 }
 
-fn print(pairs: &[Pair]) {
+pub(crate) fn print(pairs: &[Pair]) {
     println!(
         "trip      measured  computed    band 10-90 %   inside  at the intake | oxygen measured computed band         inside"
     );

@@ -4,6 +4,7 @@
 #![allow(clippy::unwrap_used, reason = "a test stops at its first surprise")]
 
 mod layering;
+mod mix;
 mod pool;
 mod table;
 mod targets;

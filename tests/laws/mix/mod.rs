@@ -1,0 +1,10 @@
+//! Laws of a mix: order, balance, leaks, overlaps, the band, limits and standings.
+
+mod balance;
+mod band;
+mod judging;
+mod leaks;
+mod limits;
+mod order;
+mod overlaps;
+mod sites;
