@@ -247,7 +247,13 @@ fn answer(cli: &Cli, clock: DateTime<Utc>) -> Result<(Vec<u8>, End), Stop> {
             mistyped(cli.folder.as_deref())?;
             let asked = Asked { site: cli.folder.clone(), ..Asked::default() };
             let context = tasks::open(&asked, clock)?;
-            let shown = text::both(&context, &tasks::pool(&context), &tasks::mix(&context, &[])?);
+            let pool = tasks::pool(&context);
+            let shown = match tasks::mix(&context, &[]) {
+                Ok(mix) => text::both(&context, &pool, &mix),
+                // no setting now in flows: the pool alone is the answer
+                Err(Failure::Usage(_)) => text::pool(&context, &pool),
+                Err(failure) => return Err(failure.into()),
+            };
             let shown = Colour::Auto.of(&shown);
             Ok((shown.into_bytes(), End::Answered))
         }

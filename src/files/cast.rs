@@ -1,6 +1,6 @@
 //! A cast file into a raw cast: columns by name, units by column, times and pool from its comments.
 
-use chrono::{DateTime, FixedOffset, NaiveDate, NaiveDateTime, NaiveTime};
+use chrono::{DateTime, Datelike, FixedOffset, NaiveDate, NaiveDateTime, NaiveTime};
 
 use crate::problem::Problem;
 use crate::profile::{Raw, RawRow};
@@ -346,15 +346,22 @@ pub const TIME_CURE: &str =
 /// A sentence that names what was written.
 pub fn parse_time(text: &str, offset: FixedOffset) -> Result<DateTime<FixedOffset>, String> {
     let text = text.trim();
-    if let Ok(time) = DateTime::parse_from_rfc3339(text) {
-        return Ok(time.with_timezone(&offset));
-    }
+    // seconds may be left out beside an offset too; `Z` is the offset zero
+    let zoned = text.strip_suffix('Z').map_or_else(|| text.to_owned(), |rest| format!("{rest}+00:00"));
+    let told = DateTime::parse_from_rfc3339(text)
+        .or_else(|_| DateTime::parse_from_str(&zoned, "%Y-%m-%dT%H:%M%:z"))
+        .map(|time| time.with_timezone(&offset));
     let formats = ["%Y-%m-%dT%H:%M:%S", "%Y-%m-%dT%H:%M", "%Y-%m-%d %H:%M:%S", "%Y-%m-%d %H:%M"];
-    let local = formats.iter().find_map(|f| NaiveDateTime::parse_from_str(text, f).ok()).or_else(|| {
+    let local = || formats.iter().find_map(|f| NaiveDateTime::parse_from_str(text, f).ok());
+    let noon = || {
         let date = NaiveDate::parse_from_str(text, "%Y-%m-%d").ok()?;
         Some(date.and_time(NaiveTime::from_hms_opt(12, 0, 0)?))
-    });
-    local
-        .and_then(|naive| naive.and_local_timezone(offset).single())
-        .ok_or_else(|| format!("`{text}` is not a date and time that exists"))
+    };
+    told.ok()
+        .or_else(|| local().or_else(noon)?.and_local_timezone(offset).single())
+        .filter(|time| YEARS.contains(&time.year()))
+        .ok_or_else(|| format!("`{text}` is not a date and time of our days"))
 }
+
+/// Years a cast or a decision can be of (choice): others are slips of the pen.
+const YEARS: std::ops::RangeInclusive<i32> = 1900..=2200;

@@ -93,10 +93,14 @@ pub struct Spread {
 }
 
 impl Perturbed {
-    /// Prepares the members' columns for a profile of some age in days (0 when unknown). The layers heave as far
-    /// after a cast as before it, so a cast later than the decision counts by its distance.
-    pub fn new(site: &Site, profile: &Profile, age_days: f64) -> Self {
-        let sd = (site.band.heave_m + site.band.heave_m_per_day * age_days.abs()).min(site.band.heave_max_m);
+    /// Prepares the members' columns for a profile of some age in days; of unknown age it heaves the most. The
+    /// layers heave as far after a cast as before it, so a cast later than the decision counts by its distance.
+    pub fn new(site: &Site, profile: &Profile, age_days: Option<f64>) -> Self {
+        let b = &site.band;
+        let sd = age_days.map_or_else(
+            || if b.heave_m_per_day > 0.0 { b.heave_max_m } else { b.heave_m.min(b.heave_max_m) },
+            |age| (b.heave_m + b.heave_m_per_day * age.abs()).min(b.heave_max_m),
+        );
         // without oxygen, so that where that was read does not move the layers
         let water = Profile::column_of(site, profile.pool_m, &profile.samples, &[]);
         let knee = knee_m(water.as_ref().unwrap_or(&profile.column));

@@ -4,13 +4,16 @@
 
 use std::f64::consts::PI;
 
+use crate::intake;
 use crate::problem::Problem;
 use crate::profile::{Column, buoyancy_s2};
 use crate::site::Site;
 use crate::units::say;
 use crate::withdrawal::{End, Side};
 
+use super::band::Spread;
 use super::blend::{Blend, Drawn, overlapping, release_joined};
+use super::levels::Setting;
 
 /// A zone thinner than this many opening heights is no longer that of a point sink (common practice, no source).
 const THIN_HEIGHTS: f64 = 2.0;
@@ -51,9 +54,13 @@ pub(super) fn zones(site: &Site, column: &Column, drawn: &[Drawn], warnings: &mu
                 "read it as a guess",
             ));
         }
-        let reach = (zone.upper.limit_m - zone.centre_m).min(zone.centre_m - zone.lower.limit_m);
-        let free = zone.upper.end == End::Free && zone.lower.end == End::Free;
-        if free && reach < THIN_HEIGHTS * d.level.height_m {
+        // a bounded side is cut by the boundary, not thin
+        let reach = [&zone.lower, &zone.upper]
+            .into_iter()
+            .filter(|side| side.end == End::Free)
+            .map(|side| (side.limit_m - zone.centre_m).abs())
+            .fold(f64::INFINITY, f64::min);
+        if reach < THIN_HEIGHTS * d.level.height_m {
             warnings.push(Problem::flag(
                 "thin-zone",
                 format!(
@@ -89,7 +96,21 @@ pub(super) fn overlaps(column: &Column, drawn: &[Drawn], release: &Blend, warnin
     }
 }
 
-pub(super) fn oxygen(site: &Site, drawn: &[Drawn], release: &Blend, warnings: &mut Vec<Problem>) {
+pub(super) fn oxygen(
+    site: &Site,
+    drawn: &[Drawn],
+    release: &Blend,
+    spread: &Spread,
+    warnings: &mut Vec<Problem>,
+) {
+    let unread = spread.cases.iter().filter(|c| c.1.is_none()).count();
+    if release.oxygen_mg_l.is_some() && unread > 0 {
+        let words = format!(
+            "in {unread} of {} perturbed cases too much water comes from where no oxygen reading reaches: no oxygen band and no share",
+            spread.cases.len()
+        );
+        warnings.push(Problem::flag("oxygen-band", words, "measure oxygen over the whole zone"));
+    }
     for d in drawn {
         let Some(draw) = &d.draw else { continue };
         if draw.oxygen_mg_l.is_none() {
@@ -118,6 +139,38 @@ pub(super) fn oxygen(site: &Site, drawn: &[Drawn], release: &Blend, warnings: &m
             ),
             "read the release oxygen as an upper bound",
         ));
+    }
+}
+
+/// Openings that stand out of the water in part.
+pub(super) fn half_dry(site: &Site, setting: &Setting, pool_m: f64, warnings: &mut Vec<Problem>) {
+    for gate in &setting.gates {
+        let Some(outlet) = site.outlets.get(gate.outlet).filter(|o| !o.is_crest()) else { continue };
+        let out_m = -intake::submergence_m(outlet, gate.opening, pool_m);
+        if out_m > 0.0 && gate.flow_m3s > 0.0 {
+            let words = format!(
+                "{}: the top of its opening stands {} out of the water; computed as if it were covered",
+                outlet.name,
+                say::m(out_m, 2)
+            );
+            warnings.push(Problem::flag("half-dry", words, "it draws air: do not rely on its figures"));
+        }
+    }
+}
+
+/// Shut gates that leak.
+pub(super) fn leaks(site: &Site, setting: &Setting, drawn: &[Drawn], warnings: &mut Vec<Problem>) {
+    let set = |i: &usize| setting.gates.iter().any(|g| g.outlet == *i);
+    let mut names: Vec<&str> = drawn
+        .iter()
+        .flat_map(|d| &d.level.outlets)
+        .filter(|i| !set(i))
+        .map(|&i| site.outlets[i].name.as_str())
+        .collect();
+    names.sort_unstable();
+    if !names.is_empty() {
+        let words = format!("leaking though shut, and part of the release: {}", names.join(", "));
+        warnings.push(Problem::note("leak", words));
     }
 }
 

@@ -144,13 +144,17 @@ pub fn judge(
     limits(site, setting, profile.pool_m, &release, &mut warnings);
     beware::zones(site, column, &drawn, &mut warnings);
     beware::overlaps(column, &drawn, &release, &mut warnings);
-    beware::oxygen(site, &drawn, &release, &mut warnings);
+    beware::oxygen(site, &drawn, &release, &spread, &mut warnings);
+    beware::half_dry(site, setting, profile.pool_m, &mut warnings);
+    beware::leaks(site, setting, &drawn, &mut warnings);
     beware::cautions(site, column, &drawn, &mut warnings);
     Some(Mix { levels: drawn, release, spread, targets, not_checked: not_checked(site, setting), warnings })
 }
 
 /// Standing of a release against every target valid on a date; the rule with the least room governs.
 fn standings(site: &Site, release: &Blend, spread: &Spread, date: NaiveDate) -> Vec<TargetStanding> {
+    // a case without oxygen is neither inside nor outside, so one such case leaves the shares unknown
+    let oxygen_known = release.oxygen_mg_l.is_some() && spread.cases.iter().all(|c| c.1.is_some());
     let valid = |t: &&(usize, &Target)| t.1.span.contains(date);
     let all: Vec<(usize, &Target)> = site.targets.iter().enumerate().collect();
     let mut out: Vec<TargetStanding> = all
@@ -159,6 +163,7 @@ fn standings(site: &Site, release: &Blend, spread: &Spread, date: NaiveDate) -> 
         .map(|&(target, rule)| {
             let value_c = Some(rule.statistic.of_steady(release.temperature_c));
             let inside = |s: (Standing, Option<f64>)| s.0 == Standing::Inside;
+            let floor = rule.oxygen_min_mg_l.is_some();
             let has_range = rule.low_c.is_some() || rule.high_c.is_some();
             let warm = |t: f64| !has_range || inside(rule.temperature(Some(t)));
             let aired = |o: Option<f64>| rule.oxygen_min_mg_l.is_none() || inside(rule.oxygen(o));
@@ -169,12 +174,8 @@ fn standings(site: &Site, release: &Blend, spread: &Spread, date: NaiveDate) -> 
                 oxygen_mg_l: release.oxygen_mg_l,
                 oxygen: rule.oxygen(release.oxygen_mg_l),
                 share_inside: if has_range { spread.share(|t, _| warm(t)) } else { None },
-                oxygen_share_inside: if rule.oxygen_min_mg_l.is_some() && release.oxygen_mg_l.is_some() {
-                    spread.share(|_, o| aired(o))
-                } else {
-                    None
-                },
-                share_inside_both: if rule.oxygen_min_mg_l.is_some() && release.oxygen_mg_l.is_none() {
+                oxygen_share_inside: if floor && oxygen_known { spread.share(|_, o| aired(o)) } else { None },
+                share_inside_both: if floor && !oxygen_known {
                     None
                 } else {
                     spread.share(|t, o| warm(t) && aired(o))

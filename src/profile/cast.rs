@@ -136,6 +136,15 @@ fn finish(
     problems: &mut Vec<Problem>,
 ) -> Option<Profile> {
     let warm: Vec<&Placed> = placed.iter().filter(|p| p.row.temperature_c.is_some()).collect();
+    if warm.len() < 2 {
+        problems.push(Problem::refused(
+            "too-few",
+            format!("the cast has {} usable sample(s)", warm.len()),
+            "give at least two depths with a temperature",
+        ));
+        return None;
+    }
+    below_zero(placed, problems);
     let dissolved: Vec<Option<f64>> = warm.iter().map(|p| dissolved_mg_l(&p.row, site)).collect();
     let suspended: Vec<Option<f64>> = warm.iter().map(|p| p.row.suspended_mg_l.map(|v| v.max(0.0))).collect();
     let elevations: Vec<f64> = warm.iter().map(|p| p.z).collect();
@@ -193,6 +202,27 @@ fn finish(
         large_inversion: found.large_inversion,
         flags: Vec::new(),
     })
+}
+
+/// Says where a sensor's zero drifted below zero; such readings count as zero.
+fn below_zero(placed: &[Placed], problems: &mut Vec<Problem>) {
+    let negative = |p: &&Placed| {
+        let r = &p.row;
+        let all = [
+            r.oxygen_mg_l,
+            r.oxygen_percent,
+            r.specific_us_cm,
+            r.conductivity_us_cm,
+            r.solids_mg_l,
+            r.suspended_mg_l,
+        ];
+        all.into_iter().flatten().any(|v| v < 0.0)
+    };
+    let found: Vec<&Placed> = placed.iter().filter(negative).collect();
+    if let Some(first) = found.first() {
+        let words = format!("{} row(s) hold a reading a little below zero; read as zero", found.len());
+        problems.push(Problem::note("below-zero", words).on_line(first.row.line));
+    }
 }
 
 fn oxygen_of(row: &RawRow) -> Option<f64> {
@@ -300,7 +330,7 @@ fn notes(raw: &Raw, with_temperature: usize, placed: &[Placed], site: &Site, pro
         problems.push(Problem::flag(
             "no-time",
             "the cast does not say when it was taken: its age is unknown",
-            "add a line `# taken: 2025-07-14T10:30`, or give --taken",
+            "add a line `# taken: 2025-07-14T10:30`, or give --profile with --taken",
         ));
     }
 }

@@ -30,9 +30,15 @@ impl Profile {
         }
         let by = pool_m - self.pool_m;
         let base = mixed_base_m(&self.column);
-        let layer = |z: f64| z >= base;
-        let moved = |z: f64| if layer(z) { Some(z + by) } else { (z < base + by).then_some(z) };
-        let kept = |z: f64| moved(z).filter(|z| *z > site.pool.bed_m);
+        // a sample of the layer goes with the surface unless the bed is in its way; one below stays unless the
+        // layer now stands there
+        let kept = |z: f64| {
+            if z >= base {
+                Some(z + by).filter(|z| *z > site.pool.bed_m)
+            } else {
+                (z < base + by).then_some(z)
+            }
+        };
         let mut samples: Vec<Sample> = Vec::with_capacity(self.samples.len());
         let mut lines = Vec::with_capacity(self.lines.len());
         for (s, line) in self.samples.iter().zip(&self.lines) {

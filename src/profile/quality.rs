@@ -18,6 +18,8 @@ const INVERSION_C: f64 = 0.25;
 const NOISE_C: f64 = 0.1;
 /// And up to this density difference, kg/m3 (choice: near 4 C temperature hardly makes any).
 const NOISE_KG_M3: f64 = 0.004;
+/// Most large inversions told one by one; of more the largest, with their count (choice).
+const TOLD: usize = 3;
 /// Inversions smaller than this are below what a sensor resolves and only counted in the note, kg/m3.
 const INVERSION_SEEN_KG_M3: f64 = 1e-4;
 /// A one-row spike needs both neighbours this near, m: farther apart, a real layer may lie between (choice).
@@ -166,7 +168,7 @@ fn inversions(site: &Site, samples: &[Sample], lines: &[usize], flags: &mut Vec<
     let level = levelled(&z, &density);
     let mut seen: Vec<Inverted> = Vec::new();
     let mut noise: Vec<Inverted> = Vec::new();
-    let mut large = false;
+    let mut large: Vec<Inverted> = Vec::new();
     let mut from = 0;
     while from < level.len() {
         let mut to = from;
@@ -183,19 +185,7 @@ fn inversions(site: &Site, samples: &[Sample], lines: &[usize], flags: &mut Vec<
         if to > from && rise >= INVERSION_SEEN_KG_M3 {
             let t = samples[from].temperature_c;
             if rise > density_of_kg_m3(INVERSION_C, t).max(INVERSION_KG_M3) {
-                large = true;
-                flags.push(
-                    Problem::flag(
-                        "inversion-large",
-                        format!(
-                            "between {} and {} denser water lies above lighter, by {rise:.3} kg/m3; levelled for the zone, and the band doubled",
-                            say::m(z[from], 2),
-                            say::m(z[to], 2)
-                        ),
-                        "check the sensor and its depth here",
-                    )
-                    .on_line(lines[from]),
-                );
+                large.push((rise, from, to));
             } else if rise > density_of_kg_m3(NOISE_C, t).max(NOISE_KG_M3) {
                 seen.push((rise, from, to));
             } else {
@@ -209,6 +199,23 @@ fn inversions(site: &Site, samples: &[Sample], lines: &[usize], flags: &mut Vec<
         1 => "one stretch".to_owned(),
         n => format!("{n} stretches"),
     };
+    let told = if large.len() > TOLD { most(&large).into_iter().collect() } else { large.clone() };
+    for (rise, from, to) in told {
+        let others = if large.len() > TOLD {
+            format!(", the largest of {} such stretches", large.len())
+        } else {
+            String::new()
+        };
+        let words = format!(
+            "between {} and {} denser water lies above lighter, by {rise:.3} kg/m3{others}; levelled for the zone, and the band doubled",
+            say::m(z[from], 2),
+            say::m(z[to], 2)
+        );
+        flags.push(
+            Problem::flag("inversion-large", words, "check the sensor and its depth here")
+                .on_line(lines[from]),
+        );
+    }
     if let Some((rise, from, to)) = most(&seen) {
         let words = format!(
             "denser water lies a little above lighter in {}, at most by {rise:.4} kg/m3, between {} and {}; levelled for the zone only",
@@ -228,7 +235,7 @@ fn inversions(site: &Site, samples: &[Sample], lines: &[usize], flags: &mut Vec<
         );
         flags.push(Problem::note("levelled", words).on_line(lines[from]));
     }
-    large
+    !large.is_empty()
 }
 
 fn saturation(

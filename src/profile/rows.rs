@@ -20,6 +20,10 @@ pub(super) struct Placed {
     pub(super) row: RawRow,
 }
 
+/// Most that a reading of reservoir water can be (choice, wide): oxygen mg/L and percent, conductance uS/cm,
+/// dissolved and suspended solids mg/L.
+const MOST: [f64; 5] = [40.0, 500.0, 100_000.0, 50_000.0, 100_000.0];
+
 /// Refuses what water cannot be.
 pub(super) fn possible(row: &RawRow, problems: &mut Vec<Problem>) {
     if let Some(t) = row.temperature_c
@@ -64,15 +68,54 @@ pub(super) fn possible(row: &RawRow, problems: &mut Vec<Problem>) {
             );
         }
     }
-    if row.oxygen_mg_l.is_some_and(|o| o > 40.0) {
-        problems.push(
-            Problem::refused(
-                "oxygen-range",
-                "oxygen above 40 mg/L cannot be",
-                "name the column oxygen_percent if the figures are percent of saturation",
-            )
-            .on_line(row.line),
-        );
+    let most = [
+        (
+            row.oxygen_mg_l,
+            MOST[0],
+            "oxygen",
+            "mg/L",
+            "oxygen-range",
+            "name the column oxygen_percent if the figures are percent of saturation",
+        ),
+        (
+            row.oxygen_percent,
+            MOST[1],
+            "oxygen",
+            "%",
+            "oxygen-range",
+            "name the column oxygen_mg_l if the figures are concentrations",
+        ),
+        (row.specific_us_cm, MOST[2], "conductance", "uS/cm", "solids-range", "check the unit of the column"),
+        (
+            row.conductivity_us_cm,
+            MOST[2],
+            "conductivity",
+            "uS/cm",
+            "solids-range",
+            "check the unit of the column",
+        ),
+        (
+            row.solids_mg_l,
+            MOST[3],
+            "dissolved solids",
+            "mg/L",
+            "solids-range",
+            "check the unit of the column",
+        ),
+        (
+            row.suspended_mg_l,
+            MOST[4],
+            "suspended solids",
+            "mg/L",
+            "solids-range",
+            "check the unit of the column",
+        ),
+    ];
+    for (value, limit, what, unit, kind, cure) in most {
+        if value.is_some_and(|v| v > limit) {
+            let words = format!("{what} above {limit:.0} {unit} is not reservoir water's");
+            problems.push(Problem::refused(kind, words, cure).on_line(row.line));
+        }
     }
 }
 
@@ -138,15 +181,6 @@ pub(super) fn place(raw: &Raw, site: &Site, pool: f64, problems: &mut Vec<Proble
         );
     }
     let kept: Vec<Placed> = kept.into_iter().map(|p| Placed { z: p.z.min(pool), ..p }).collect();
-    let usable = kept.iter().filter(|p| p.row.temperature_c.is_some()).count();
-    if usable < 2 {
-        problems.push(Problem::refused(
-            "too-few",
-            format!("the cast has {usable} usable sample(s)"),
-            "give at least two depths with a temperature",
-        ));
-        return None;
-    }
     Some(kept)
 }
 
@@ -176,47 +210,74 @@ pub(super) fn order(placed: &mut [Placed], problems: &mut Vec<Problem>) {
     placed.sort_by(|a, b| a.z.total_cmp(&b.z).then(a.row.line.cmp(&b.row.line)));
 }
 
-/// Pools rows at one elevation into their mean and flags it.
+/// Most duplicates told one by one; more are told together (choice).
+const TOLD: usize = 3;
+
+/// Pools rows at one elevation into their mean and flags it. A group reaches no farther than from its first row, so
+/// that closely spaced samples do not run together.
 pub(super) fn pool_duplicates(placed: &[Placed], problems: &mut Vec<Problem>) -> Vec<Placed> {
-    let mut out: Vec<Placed> = Vec::with_capacity(placed.len());
-    for group in placed.chunk_by(|a, b| (b.z - a.z).abs() < SAME_ELEVATION_M) {
-        let Some(first) = group.first() else { continue };
-        if group.len() > 1 {
-            let temperatures = || group.iter().filter_map(|p| p.row.temperature_c);
-            let spread = temperatures().fold(f64::NEG_INFINITY, f64::max)
-                - temperatures().fold(f64::INFINITY, f64::min);
-            let words = if spread.is_finite() {
-                format!(
-                    "{} rows at one depth, up to {} apart; their mean is used",
-                    group.len(),
-                    say::dc(spread, 2)
-                )
-            } else {
-                format!("{} rows at one depth; their mean is used", group.len())
-            };
-            problems.push(
-                Problem::flag("duplicate", words, "keep one row if they should not be averaged")
-                    .on_line(first.row.line),
-            );
-        }
-        let mean = |read: &dyn Fn(&RawRow) -> Option<f64>| {
-            let values: Vec<f64> = group.iter().filter_map(|p| read(&p.row)).collect();
-            (!values.is_empty()).then(|| values.iter().sum::<f64>() / values.len() as f64)
-        };
-        out.push(Placed {
-            z: first.z,
-            row: RawRow {
-                line: first.row.line,
-                temperature_c: mean(&|r| r.temperature_c),
-                oxygen_mg_l: mean(&|r| r.oxygen_mg_l),
-                oxygen_percent: mean(&|r| r.oxygen_percent),
-                specific_us_cm: mean(&|r| r.specific_us_cm),
-                conductivity_us_cm: mean(&|r| r.conductivity_us_cm),
-                solids_mg_l: mean(&|r| r.solids_mg_l),
-                suspended_mg_l: mean(&|r| r.suspended_mg_l),
-                ..first.row
-            },
-        });
+    let mut groups: Vec<&[Placed]> = Vec::with_capacity(placed.len());
+    let mut rest = placed;
+    while let Some(first) = rest.first() {
+        let count = rest.partition_point(|p| p.z - first.z < SAME_ELEVATION_M);
+        let (group, others) = rest.split_at(count.max(1));
+        groups.push(group);
+        rest = others;
     }
-    out
+    duplicate_flags(&groups, problems);
+    groups.into_iter().filter_map(pooled).collect()
+}
+
+/// Rows of one elevation and how far apart their temperatures are, C.
+fn spread_c(group: &[Placed]) -> f64 {
+    let temperatures = || group.iter().filter_map(|p| p.row.temperature_c);
+    let spread =
+        temperatures().fold(f64::NEG_INFINITY, f64::max) - temperatures().fold(f64::INFINITY, f64::min);
+    spread.max(0.0)
+}
+
+fn duplicate_flags(groups: &[&[Placed]], problems: &mut Vec<Problem>) {
+    let doubled: Vec<(&[Placed], usize)> =
+        groups.iter().filter(|g| g.len() > 1).filter_map(|g| Some((*g, g.first()?.row.line))).collect();
+    let mut flag = |words: String, line: usize| {
+        let cure = "keep one row if they should not be averaged";
+        problems.push(Problem::flag("duplicate", words, cure).on_line(line));
+    };
+    if doubled.len() > TOLD {
+        let most = doubled.iter().map(|(g, _)| spread_c(g)).fold(0.0, f64::max);
+        let words = format!(
+            "{} depths have several rows, up to {} apart; their means are used",
+            doubled.len(),
+            say::dc(most, 2)
+        );
+        flag(words, doubled[0].1);
+        return;
+    }
+    for (group, line) in doubled {
+        let (rows, apart) = (group.len(), say::dc(spread_c(group), 2));
+        flag(format!("{rows} rows at one depth, up to {apart} apart; their mean is used"), line);
+    }
+}
+
+/// The mean of a group of rows, at its first.
+fn pooled(group: &[Placed]) -> Option<Placed> {
+    let first = group.first()?;
+    let mean = |read: &dyn Fn(&RawRow) -> Option<f64>| {
+        let values: Vec<f64> = group.iter().filter_map(|p| read(&p.row)).collect();
+        (!values.is_empty()).then(|| values.iter().sum::<f64>() / values.len() as f64)
+    };
+    Some(Placed {
+        z: first.z,
+        row: RawRow {
+            line: first.row.line,
+            temperature_c: mean(&|r| r.temperature_c),
+            oxygen_mg_l: mean(&|r| r.oxygen_mg_l),
+            oxygen_percent: mean(&|r| r.oxygen_percent),
+            specific_us_cm: mean(&|r| r.specific_us_cm),
+            conductivity_us_cm: mean(&|r| r.conductivity_us_cm),
+            solids_mg_l: mean(&|r| r.solids_mg_l),
+            suspended_mg_l: mean(&|r| r.suspended_mg_l),
+            ..first.row
+        },
+    })
 }

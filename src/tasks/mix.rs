@@ -39,7 +39,7 @@ pub fn mix(context: &Context, sets: &[String]) -> Result<MixAnswer, Failure> {
     if !refused.is_empty() {
         return Err(Failure::Refused(refused, context.system));
     }
-    let perturbed = Perturbed::new(site, &context.profile, context.age_days.unwrap_or(0.0));
+    let perturbed = Perturbed::new(site, &context.profile, context.age_days);
     let date = context.on.date_naive();
     let judged = judge(site, &context.profile, &perturbed, &setting, date);
     let Some(mut mix) = judged else {
@@ -47,16 +47,36 @@ pub fn mix(context: &Context, sets: &[String]) -> Result<MixAnswer, Failure> {
         return Err(Failure::Refused(vec![problem], context.system));
     };
     mix.warnings.extend(opening_note(site, &setting));
-    let now = now.and_then(|mut now| {
-        spill(site, context.profile.pool_m, &mut now);
-        let possible = refusals(site, &now, context.profile.pool_m).is_empty();
-        if !possible || same(&now, &setting) {
-            return None;
-        }
-        let judged = judge(site, &context.profile, &perturbed, &now, date)?;
-        Some((now, judged))
-    });
+    let (now, why_not) = judged_now(context, &perturbed, &setting);
+    mix.warnings.extend(why_not);
     Ok(MixAnswer { setting, mix, now })
+}
+
+/// The setting now judged beside another, or why it cannot be shown.
+fn judged_now(
+    context: &Context,
+    perturbed: &Perturbed,
+    tried: &Setting,
+) -> (Option<(Setting, Mix)>, Option<Problem>) {
+    let site = context.site();
+    let unshown = |why: String| {
+        (None, Some(Problem::note("now-not-shown", format!("the setting now is not shown: {why}"))))
+    };
+    if site.now.is_empty() {
+        return unshown("the site file gives none under `now`".into());
+    }
+    let Some(mut now) = now_setting(site) else {
+        return unshown("it is given in openings, and the flows they make are not computed".into());
+    };
+    spill(site, context.profile.pool_m, &mut now);
+    if let Some(problem) = refusals(site, &now, context.profile.pool_m).first() {
+        return unshown(problem.words.clone());
+    }
+    if same(&now, tried) {
+        return (None, None);
+    }
+    let judged = judge(site, &context.profile, perturbed, &now, context.on.date_naive());
+    (judged.map(|mix| (now, mix)), None)
 }
 
 /// Gates set by flow alone are taken fully open, and the output says so.
@@ -65,7 +85,7 @@ fn opening_note(site: &Site, setting: &Setting) -> Option<Problem> {
         .gates
         .iter()
         .filter_map(|g| site.outlets.get(g.outlet))
-        .filter(|o| !o.is_crest())
+        .filter(|o| !o.is_crest() || o.positions.iter().any(|p| p.crest_m.is_some()))
         .map(|o| o.name.as_str())
         .collect();
     names.sort_unstable();
@@ -137,6 +157,9 @@ fn parse_setting(site: &Site, sets: &[String], pool_m: f64) -> Result<Setting, F
             }
             None => return Err(Failure::Usage(format!("--set {set}: give a flow, such as {name}=30"))),
         };
+        if !Dimension::Flow.is_plausible(flow_m3s) {
+            return Err(Failure::Usage(format!("--set {set}: no dam passes such a flow")));
+        }
         if flow_m3s < 0.0 {
             return Err(Failure::Usage(format!("--set {set}: a flow cannot be negative")));
         }

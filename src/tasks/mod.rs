@@ -3,7 +3,7 @@
 //! A task takes what the user asked as text where its meaning depends on the site (its units, its gates), and
 //! the clock from its caller.
 
-use chrono::{DateTime, FixedOffset, Utc};
+use chrono::{DateTime, FixedOffset, SubsecRound, Utc};
 
 use crate::files::cast::{TIME_CURE, parse_time};
 use crate::files::folder::{self, Folder, demonstrations};
@@ -113,6 +113,11 @@ pub fn open(asked: &Asked, clock: DateTime<Utc>) -> Result<Context, Failure> {
                 .map_err(|error| Failure::Usage(format!("--pool {text}: {error}")))?,
         ),
     };
+    if asked.taken.is_some() && asked.profile.is_none() {
+        return Err(Failure::Usage(
+            "--taken tells when a cast was taken: name the cast with --profile".into(),
+        ));
+    }
     if let Some(taken) = &asked.taken {
         parse_time(taken, site.offset)
             .map_err(|words| Failure::Usage(format!("--taken: {words}; {TIME_CURE}")))?;
@@ -142,7 +147,8 @@ fn decision_date(
     clock: DateTime<Utc>,
 ) -> Result<(DateTime<FixedOffset>, OnFrom), Failure> {
     let site = &folder.site;
-    let now = clock.with_timezone(&site.offset);
+    // whole seconds: finer ones say nothing and would differ at every call
+    let now = clock.with_timezone(&site.offset).trunc_subsecs(0);
     match asked.on.as_deref() {
         Some("now") => Ok((now, OnFrom::Clock)),
         Some(text) => parse_time(text, site.offset)
@@ -187,6 +193,8 @@ pub enum Freshness {
     Stale,
     /// Its time is not known.
     Unknown,
+    /// Taken after the decision date.
+    Later,
 }
 
 impl Freshness {
@@ -194,6 +202,7 @@ impl Freshness {
     pub fn of(site: &Site, age_days: Option<f64>) -> Self {
         match age_days {
             None => Self::Unknown,
+            Some(age) if age < 0.0 => Self::Later,
             Some(age) if age > site.checks.stale_days => Self::Stale,
             Some(age) if age > site.checks.ageing_days => Self::Ageing,
             Some(_) => Self::Fresh,
@@ -207,6 +216,7 @@ impl Freshness {
             Self::Ageing => "ageing",
             Self::Stale => "stale",
             Self::Unknown => "age unknown",
+            Self::Later => "later than the date",
         }
     }
 }

@@ -39,6 +39,22 @@ impl Dimension {
         Unit::ALL.iter().copied().filter(move |unit| unit.dimension() == self)
     }
 
+    /// Whether an SI value can be that of a reservoir at all (choice, far beyond any): larger ones are slips that
+    /// would drown every other figure.
+    pub fn is_plausible(self, value_si: f64) -> bool {
+        let most = match self {
+            Self::Length => 1e5,
+            Self::Area => 1e12,
+            Self::Volume => 1e15,
+            Self::Flow => 1e7,
+            Self::Temperature => 1e3,
+            Self::TemperatureDifference => 1e2,
+            Self::Concentration => 1e6,
+            Self::Percent => 1e4,
+        };
+        value_si.abs() <= most
+    }
+
     /// The accepted symbols as a sentence gives them, such as `m or ft`.
     pub fn accepted(self) -> String {
         let symbols: Vec<&str> = self.units().map(Unit::symbol).collect();

@@ -166,7 +166,7 @@ fn judged(site: &Site, profile: &Profile, share: f64) -> Result<(), TestCaseErro
         .collect();
     let setting = Setting { gates };
     said_well(&refusals(site, &setting, profile.pool_m))?;
-    let perturbed = Perturbed::new(site, profile, 3.0);
+    let perturbed = Perturbed::new(site, profile, Some(3.0));
     let summer = NaiveDate::from_ymd_opt(2026, 7, 20).unwrap();
     let Some(mix) = judge(site, profile, &perturbed, &setting, summer) else { return Ok(()) };
     finite(&(&mix.levels, &mix.release, &mix.spread, &mix.targets))?;

@@ -132,7 +132,7 @@ fn pair(site: &Site, row: &PairRow, casts: &[CastRow], place: Place, conductance
     let profile = sound(profile, &problems);
     let released = NaiveDateTime::parse_from_str(&row.release_datetime, "%Y-%m-%d %H:%M:%S").unwrap().date();
     let age_days = (released - row.profile_date).num_days().unsigned_abs();
-    let perturbed = Perturbed::new(site, &profile, f64::from(u32::try_from(age_days).unwrap()));
+    let perturbed = Perturbed::new(site, &profile, Some(f64::from(u32::try_from(age_days).unwrap())));
     let flow_m3s = Unit::CubicFootPerSecond.to_si(row.power_cfs);
     let setting = Setting { gates: vec![Gate { outlet: 0, opening: 1.0, flow_m3s }] };
     let mix = judge(site, &profile, &perturbed, &setting, released).unwrap();

@@ -54,28 +54,25 @@ struct In {
 
 impl In {
     fn quantity(&self, value: &Value, dimension: Dimension) -> Option<f64> {
-        match value.scalar()? {
+        let (si, written) = match value.scalar()? {
             Scalar::Number(number) => {
-                let si = self.units.to_si(number, dimension);
-                if si.is_finite() {
-                    return Some(si);
-                }
                 let unit = self.units.unit(dimension);
-                value.report(Problem::refused(
-                    "quantity",
-                    format!("{number:e} {unit} is too large a {dimension}"),
-                    "correct the figure",
-                ));
-                None
+                (self.units.to_si(number, dimension), format!("{number:e} {unit}"))
             }
             Scalar::Text(text) => match self.units.parse(text, dimension) {
-                Ok(si) => Some(si),
+                Ok(si) => (si, text.to_owned()),
                 Err(error) => {
                     value.report(Problem::refused("quantity", error.to_string(), ""));
-                    None
+                    return None;
                 }
             },
+        };
+        if dimension.is_plausible(si) {
+            return Some(si);
         }
+        let words = format!("{written} is too large a {dimension}");
+        value.report(Problem::refused("quantity", words, "correct the figure"));
+        None
     }
 
     fn optional(&self, map: &Map, key: &'static str, dimension: Dimension) -> Option<f64> {

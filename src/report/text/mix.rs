@@ -17,8 +17,12 @@ use super::{
 pub(super) fn body(context: &Context, answer: &MixAnswer) -> String {
     let (site, system) = (context.site(), context.system);
     let total = flow(answer.mix.release.flow_m3s, system);
-    let mut out =
-        labelled("Set", &format!("{} = {total} in total", setting_words(site, &answer.setting, system)));
+    let set: f64 = answer.setting.gates.iter().map(|g| g.flow_m3s).sum();
+    let leaks = if answer.mix.release.flow_m3s > set * (1.0 + 1e-9) { ", leaks included" } else { "" };
+    let mut out = labelled(
+        "Set",
+        &format!("{} = {total} in total{leaks}", setting_words(site, &answer.setting, system)),
+    );
     out.push_str(&labelled("Release", &release_line(&answer.mix, system)));
     if let Some((now, mix)) = &answer.now {
         out.push_str(&against_now(site, now, mix, &answer.mix, system));

@@ -6,7 +6,7 @@ use crate::problem::harmless;
 use crate::tasks::{Context, PoolAnswer};
 use crate::units::System;
 
-use super::{fitted, length, temperature, volume};
+use super::{fitted, length, step, temperature, volume};
 
 pub(super) fn layers(context: &Context, answer: &PoolAnswer) -> String {
     let system = context.system;
@@ -19,7 +19,13 @@ pub(super) fn layers(context: &Context, answer: &PoolAnswer) -> String {
         volume(l.volume_m3, system)
     );
     match &l.thermocline {
-        None => out.push_str("No thermocline: top and bottom differ by less than about 1 C (1.8 F)\n"),
+        None => {
+            let _ = writeln!(
+                out,
+                "No thermocline: top and bottom differ by less than about {}",
+                step(1.0, system)
+            );
+        }
         Some(t) => {
             let per = match system {
                 System::Us => format!("{:.1} F per ft", t.gradient_c_m * 1.8 * 0.3048),

@@ -4,6 +4,8 @@ use crate::problem::Problem;
 use crate::site::{Kind, Outlet, Pool, Raw, RawOutlet, RawWell, Shape, Well};
 use crate::units::say;
 
+/// Least head a leak can be told at, m (choice).
+const LEAK_HEAD_M: f64 = 1e-3;
 /// How far a conduit may lie below the bed of the pool table, m (a tower's foot stands deeper than silt).
 const CONDUIT_SLACK_M: f64 = 5.0;
 
@@ -135,6 +137,16 @@ pub(super) fn outlet(
     if let Some(leak) = &o.leakage {
         not_negative(Some(leak.flow_m3s), at("leakage.flow"), "leakage.flow", problems);
         positive(Some(leak.head_m), at("leakage.head"), "leakage.head", problems);
+        if (0.0..LEAK_HEAD_M).contains(&leak.head_m) && leak.head_m > 0.0 {
+            problems.push(
+                Problem::refused(
+                    "leak-head",
+                    "leakage.head is less than a millimetre",
+                    "give the head at which the leak was measured",
+                )
+                .at(at("leakage.head")),
+            );
+        }
         if leak.range_m3s.is_some_and(|(low, high)| low < 0.0 || low > leak.flow_m3s || high < leak.flow_m3s)
         {
             problems.push(
@@ -162,9 +174,11 @@ pub(super) fn outlet(
             return None;
         }
     };
-    positions(o, i, crest, problems);
+    positions(o, i, crest, pool, problems);
     let kind = if crest { crest_kind(o, i, problems) } else { orifice_kind(o, i, problems) };
-    let (centre_m, kind) = (o.centre_m?, kind?);
+    // fully open is the lowest edge the crew can set
+    let edges = o.positions.iter().filter_map(|p| p.crest_m);
+    let (centre_m, kind) = (edges.reduce(f64::min).or(o.centre_m)?, kind?);
     let built = Outlet {
         name: o.name.clone()?,
         well,
@@ -255,7 +269,7 @@ fn crest_kind(o: &RawOutlet, i: usize, problems: &mut Vec<Problem>) -> Option<Ki
     Some(Kind::Crest { length_m, gated: o.gated.unwrap_or(false), rating: o.rating.clone() })
 }
 
-fn positions(o: &RawOutlet, i: usize, crest: bool, problems: &mut Vec<Problem>) {
+fn positions(o: &RawOutlet, i: usize, crest: bool, pool: Option<&Pool>, problems: &mut Vec<Problem>) {
     for (k, p) in o.positions.iter().enumerate() {
         let path = format!("outlets[{i}].positions[{k}]");
         if !(0.0..=1.0).contains(&p.opening) {
@@ -264,6 +278,23 @@ fn positions(o: &RawOutlet, i: usize, crest: bool, problems: &mut Vec<Problem>) 
                     "position",
                     format!("position `{}` lies outside 0 to 100 %", p.name),
                     "give percent of the full opening",
+                )
+                .at(path.clone()),
+            );
+        }
+        if let (Some(edge), Some(pool)) = (p.crest_m, pool)
+            && !(pool.bed_m..=pool.top_m()).contains(&edge)
+        {
+            problems.push(
+                Problem::refused(
+                    "outside-pool",
+                    format!(
+                        "position `{}`: its crest {} lies outside the pool table ({})",
+                        p.name,
+                        say::m(edge, 2),
+                        pool.extent()
+                    ),
+                    "check the elevation and its datum",
                 )
                 .at(path.clone()),
             );

@@ -159,7 +159,7 @@ fn scenario_a_large_inversion_doubles_the_band() {
 fn scenario_an_older_cast_has_a_wider_band_and_so_has_a_later_one() {
     let ready = inverted(-1.0).ready().unwrap();
     let at = |days: f64| {
-        let perturbed = Perturbed::new(&ready.site, &ready.profile, days);
+        let perturbed = Perturbed::new(&ready.site, &ready.profile, Some(days));
         let groups = gatemix::mix::groups(&ready.site);
         perturbed.spread(&ready.site, &groups, &ready.setting, &ready.judged().release)
     };

@@ -53,7 +53,7 @@ impl Case {
 
 impl Ready {
     pub(super) fn judged(&self) -> Mix {
-        let perturbed = Perturbed::new(&self.site, &self.profile, 2.0);
+        let perturbed = Perturbed::new(&self.site, &self.profile, Some(2.0));
         judge(&self.site, &self.profile, &perturbed, &self.setting, day()).unwrap()
     }
 
