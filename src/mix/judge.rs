@@ -7,7 +7,7 @@ use crate::problem::Problem;
 use crate::profile::Profile;
 use crate::site::{Outlet, Site};
 use crate::target::{Standing, Target};
-use crate::units::say;
+use crate::units::{Dimension, say};
 use crate::withdrawal::CrestForm;
 
 use super::band::{Perturbed, Spread};
@@ -108,7 +108,12 @@ pub fn refusals(site: &Site, setting: &Setting, pool_m: f64) -> Vec<Problem> {
             ));
             continue;
         }
-        if let Some(most) = intake::capacity_m3s(site, outlet, gate.opening, pool_m)
+        let most = intake::capacity_m3s(site, outlet, gate.opening, pool_m);
+        if most.is_none() && !Dimension::Flow.is_plausible(gate.flow_m3s) {
+            let words = format!("no outlet passes {} as set on `{name}`", say::m3s(gate.flow_m3s, 2));
+            out.push(Problem::refused("capacity", words, "correct the flow"));
+        }
+        if let Some(most) = most
             && gate.flow_m3s > most * (1.0 + 1e-9)
         {
             out.push(Problem::refused(

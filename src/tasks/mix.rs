@@ -157,9 +157,6 @@ fn parse_setting(site: &Site, sets: &[String], pool_m: f64) -> Result<Setting, F
             }
             None => return Err(Failure::Usage(format!("--set {set}: give a flow, such as {name}=30"))),
         };
-        if !Dimension::Flow.is_plausible(flow_m3s) {
-            return Err(Failure::Usage(format!("--set {set}: no dam passes such a flow")));
-        }
         if flow_m3s < 0.0 {
             return Err(Failure::Usage(format!("--set {set}: a flow cannot be negative")));
         }

@@ -29,7 +29,8 @@ fn scenario_a_command_line_that_cannot_be_understood_exits_2() {
         (vec!["pool", site, "--pool", "60cfs"], "unit of flow, not of length"),
         (vec!["pool", site, "--on", "2025-02-30"], "2025-02-30"),
         (vec!["pool", site, "--on", "tomorrow"], "tomorrow"),
-        (vec!["pool", site, "--taken", "2025-13-01"], "2025-13-01"),
+        (vec!["pool", site, "--profile", "a.csv", "--taken", "2025-13-01"], "2025-13-01"),
+        (vec!["pool", site, "--taken", "2025-07-14"], "name the cast with --profile"),
         (vec!["completions", "cmd"], "cmd"),
     ] {
         let run = run(&arguments);

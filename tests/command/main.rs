@@ -8,6 +8,7 @@ mod escapes;
 mod exits;
 mod loggers;
 mod refused;
+mod stories;
 mod units;
 
 use std::fs;
