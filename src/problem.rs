@@ -181,6 +181,8 @@ mod tests {
     }
 
     proptest! {
+
+        #![proptest_config(crate::units::law_config())]
         #[test]
         fn law_no_control_character_reaches_the_reader(
             pieces in proptest::collection::vec("[\u{2}\u{3}\u{1b}\n\u{9b}LT29=+e.é]{0,6}", 4)

@@ -20,3 +20,10 @@ pub use parse::{UnitError, parse};
 pub use say::in_system;
 pub use show::{System, figure, show};
 pub use unit::{Dimension, Unit};
+
+/// How the property tests beside the sources run; cases that fail are kept with those of the other tests.
+#[cfg(test)]
+pub(crate) fn law_config() -> proptest::test_runner::Config {
+    let kept = proptest::test_runner::FileFailurePersistence::Direct("tests/laws/regressions.txt");
+    proptest::test_runner::Config { failure_persistence: Some(Box::new(kept)), ..Default::default() }
+}

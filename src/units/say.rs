@@ -166,6 +166,8 @@ mod tests {
     }
 
     proptest! {
+
+        #![proptest_config(crate::units::law_config())]
         #[test]
         fn law_a_mark_keeps_its_value(said in any_said()) {
             let text = said.to_string();

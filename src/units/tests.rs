@@ -66,6 +66,8 @@ fn check_text(text: &str, dimension: Dimension) -> Result<(), TestCaseError> {
 }
 
 proptest! {
+
+    #![proptest_config(crate::units::law_config())]
     #[test]
     fn law_round_trip(unit in any_unit(), value in -1e9..1e9_f64) {
         let back = unit.from_si(unit.to_si(value));

@@ -7,6 +7,8 @@ use proptest::prelude::*;
 const RHO_S: f64 = SEDIMENT_DENSITY_KG_M3;
 
 proptest! {
+
+    #![proptest_config(crate::units::law_config())]
     #[test]
     fn law_density_falls_away_from_its_greatest(
         salt in 0.0..2.0_f64, suspended in 0.0..3000.0_f64, near in 0.05..10.0_f64, further in 0.05..10.0_f64,

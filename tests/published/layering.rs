@@ -189,6 +189,8 @@ fn profile(table: Vec<site::RawRow>, temperature_c: f64) -> (Profile, Site) {
 }
 
 proptest! {
+
+    #![proptest_config(crate::law_config())]
 /// A uniform pool holds rho cp V T, is nowhere layered and needs no work to mix.
 #[test]
 fn law_heat_of_a_uniform_pool(table in tables(), t in 0.5..28.0_f64) {

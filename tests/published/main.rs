@@ -11,3 +11,9 @@ mod targets;
 mod units;
 mod water;
 mod withdrawal;
+
+/// How the property tests beside the published values run; cases that fail are kept with those of the laws.
+fn law_config() -> proptest::test_runner::Config {
+    let kept = proptest::test_runner::FileFailurePersistence::Direct("tests/laws/regressions.txt");
+    proptest::test_runner::Config { failure_persistence: Some(Box::new(kept)), ..Default::default() }
+}

@@ -37,6 +37,8 @@ pub(crate) fn tables() -> impl Strategy<Value = Vec<site::RawRow>> {
 }
 
 proptest! {
+
+    #![proptest_config(crate::law_config())]
     /// Volume, area and their inverses go round; the table rules at its rows; dV = A dz inside a stretch.
     #[test]
     fn law_pool_look_ups_and_inverses(table in tables(), share in 0.0..1.0_f64) {

@@ -58,6 +58,8 @@ fn scenario_days_that_are_no_days_are_not_read() {
 }
 
 proptest! {
+
+    #![proptest_config(crate::law_config())]
     /// A span and the days it leaves out part every year, leap years too.
     #[test]
     fn law_a_span_and_its_rest_part_the_year(from in 1..=366_u32, length in 1..=365_u32, year in 2024..=2031) {
