@@ -112,11 +112,13 @@ impl Problem {
         if let Some(path) = self.place.path.as_deref().filter(|p| !p.is_empty()) {
             _ = write!(out, "{}: ", harmless(path));
         }
-        out.push_str(&self.sentence(system));
-        if !self.cure.is_empty() {
-            _ = write!(out, "; {}", shown(&self.cure, system));
-        }
-        out
+        out + &self.advice(system)
+    }
+
+    /// The words with their cure, quantities in the reader's units, made harmless for a terminal.
+    pub fn advice(&self, system: System) -> String {
+        let words = self.sentence(system);
+        if self.cure.is_empty() { words } else { format!("{words}; {}", shown(&self.cure, system)) }
     }
 
     /// The words alone, quantities in the reader's units, made harmless for a terminal.

@@ -87,7 +87,8 @@ pub struct Listed {
     pub raw: Option<Raw>,
     /// Problems, flags and notes.
     pub problems: Vec<Problem>,
-    source: Option<Source>,
+    /// The bytes it came from.
+    pub source: Option<Source>,
 }
 
 impl Folder {
@@ -229,7 +230,7 @@ impl Folder {
                 Problem::flag(
                     "cast-unreadable",
                     first.map_or_else(String::new, |p| {
-                        format!("this cast cannot be read and is passed over: {}", p.words)
+                        format!("{} cannot be read and is passed over: {}", broken.file, p.words)
                     }),
                     "run `gatemix check` on the site",
                 )

@@ -123,23 +123,22 @@ impl Pool {
                 );
             }
         }
-        let given = table.iter().filter(|r| r.volume_m3.is_some()).count();
-        if given != 0 && given != table.len() {
-            refuse(
-                "pool.table".into(),
-                "table-gaps",
-                format!("{given} of {} rows give a volume", table.len()),
-                "give the volume in every row, or in none (the areas are then integrated)",
-            );
-        }
-        let wide = table.iter().filter(|r| r.width_m.is_some()).count();
-        if wide != 0 && wide != table.len() {
-            refuse(
-                "pool.table".into(),
-                "table-gaps",
-                format!("{wide} of {} rows give a width", table.len()),
-                "give the width in every row, or in none",
-            );
+        for (given, what, else_) in [
+            (
+                table.iter().filter(|r| r.volume_m3.is_some()).count(),
+                "volume",
+                " (the areas are then integrated)",
+            ),
+            (table.iter().filter(|r| r.width_m.is_some()).count(), "width", ""),
+        ] {
+            if given != 0 && given != table.len() {
+                refuse(
+                    "pool.table".into(),
+                    "table-gaps",
+                    format!("{given} of {} rows give a {what}", table.len()),
+                    &format!("give the {what} in every row, or in none{else_}"),
+                );
+            }
         }
         if full_m <= bed_m {
             refuse(

@@ -7,6 +7,7 @@ use chrono::{DateTime, FixedOffset, SubsecRound, Utc};
 
 use crate::files::cast::{TIME_CURE, parse_time};
 use crate::files::folder::{self, Folder, demonstrations};
+use crate::files::text::Source;
 use crate::problem::Problem;
 use crate::profile::Profile;
 use crate::site::Site;
@@ -88,6 +89,8 @@ pub struct Context {
     pub fingerprint: String,
     /// Units shown.
     pub system: System,
+    /// The cast's bytes.
+    source: Source,
 }
 
 impl Context {
@@ -132,7 +135,7 @@ pub fn open(asked: &Asked, clock: DateTime<Utc>) -> Result<Context, Failure> {
     let age_days = profile.age_days(on);
     age_flags(site, &mut profile, age_days);
     let fingerprint = folder.fingerprint(&[&read.source]);
-    Ok(Context { folder, profile, on, on_from, age_days, fingerprint, system })
+    Ok(Context { folder, profile, on, on_from, age_days, fingerprint, system, source: read.source })
 }
 
 fn open_folder(asked: &Asked) -> Result<Folder, Failure> {

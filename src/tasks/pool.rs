@@ -3,12 +3,13 @@
 //! Methods: `docs/methods.md`, section 2.
 
 use crate::files::folder::Listed;
+use crate::files::text::Source;
 use crate::intake;
 use crate::problem::Problem;
 use crate::profile::{Layering, Profile, colder_m3};
-use crate::site::Site;
+use crate::site::{Kind, Site};
 use crate::water::{CP_REF_J_KG_K, RHO_REF_KG_M3};
-use crate::withdrawal::{Opening, Sink, zone};
+use crate::withdrawal::{CrestForm, Opening, Sink, zone};
 
 use super::Context;
 
@@ -49,6 +50,8 @@ pub struct PoolAnswer {
     pub outlets: Vec<OutletState>,
     /// Flags against the cast before this one.
     pub against_previous: Vec<Problem>,
+    /// Fingerprint of the inputs, the cast before this one included.
+    pub fingerprint: String,
 }
 
 /// Is this profile sound, how is the water layered.
@@ -85,8 +88,12 @@ pub fn pool(context: &Context) -> PoolAnswer {
             ColdWater { threshold_c, total_m3: colder(site.pool.bed_m), usable_m3: reach_m.map(colder) }
         })
         .collect();
-    let against_previous = previous(context, &layering);
-    PoolAnswer { layering, cold, reach_m, outlets, against_previous }
+    let earlier = previous(context);
+    let against_previous =
+        earlier.as_ref().and_then(|e| heat_change(context, &layering, &e.0)).into_iter().collect();
+    let sources: Vec<&Source> = [&context.source].into_iter().chain(earlier.as_ref().map(|e| &e.1)).collect();
+    let fingerprint = context.folder.fingerprint(&sources);
+    PoolAnswer { layering, cold, reach_m, outlets, against_previous, fingerprint }
 }
 
 /// Lowest limit of the deepest usable outlet at the least release of the site, m; its centre-line where the site
@@ -99,36 +106,37 @@ fn reach_m(site: &Site, profile: &Profile, outlets: &[OutletState]) -> Option<f6
     let sink = Sink {
         centre_m: outlet.open_part(1.0).centre_m,
         flow_m3s,
-        opening: Opening::Port { angle_rad: outlet.angle_rad },
+        opening: match outlet.kind {
+            Kind::Crest { length_m, .. } => Opening::Crest { length_m, form: CrestForm::Overflow },
+            Kind::Orifice(_) => Opening::Port { angle_rad: outlet.angle_rad },
+        },
     };
     Some(zone(&profile.column, &sink, 1.0).map_or(sink.centre_m, |z| z.lower.limit_m))
 }
 
-/// Heat gained or lost since the cast before, against what weather brings.
-fn previous(context: &Context, layering: &Layering) -> Vec<Problem> {
-    let site = context.site();
-    let Some(taken) = context.profile.taken else { return Vec::new() };
+/// The last sound cast before the one in hand, and its bytes.
+fn previous(context: &Context) -> Option<(Profile, Source)> {
+    let taken = context.profile.taken?;
     let casts = context.folder.casts();
     let before = |l: &&Listed| l.raw.as_ref().and_then(|r| r.taken).is_some_and(|t| t < taken);
-    let Some(last) = casts.iter().rev().find(before) else { return Vec::new() };
-    let (Some(earlier), _) = context.folder.profile_of(last) else { return Vec::new() };
-    let Some(days) = earlier.age_days(taken).filter(|d| *d > 0.5) else { return Vec::new() };
-    let old = Layering::of(&earlier, &site.pool);
+    let last = casts.iter().rev().find(before)?;
+    Some((context.folder.profile_of(last).0?, last.source.clone()?))
+}
+
+/// Heat gained or lost since an earlier cast, where it is more than weather brings.
+fn heat_change(context: &Context, layering: &Layering, earlier: &Profile) -> Option<Problem> {
+    let site = context.site();
+    let days = earlier.age_days(context.profile.taken?).filter(|d| *d > 0.5)?;
+    let old = Layering::of(earlier, &site.pool);
     // the common volume gains this much per area: volumes themselves come and go with the river
     let depth_m = layering.volume_m3 / site.pool.area_m2(context.profile.pool_m);
     let flux = RHO_REF_KG_M3 * CP_REF_J_KG_K * depth_m * (layering.mean_c - old.mean_c) / (days * 86_400.0);
-    if flux.abs() <= site.checks.heat_w_m2 {
-        return Vec::new();
-    }
-    vec![
-        Problem::flag(
-            "heat-change",
-            format!(
-                "the water changed by {flux:+.0} W/m2 over {days:.0} days since {}: more than weather brings ({:.0})",
-                earlier.file, site.checks.heat_w_m2
-            ),
-            "one of the two casts may be wrong, or the river exchanged the pool",
-        )
-        .in_file(&context.profile.file),
-    ]
+    (flux.abs() > site.checks.heat_w_m2).then(|| {
+        let words = format!(
+            "the water changed by {flux:+.0} W/m2 over {days:.0} days since {}: more than weather brings ({:.0})",
+            earlier.file, site.checks.heat_w_m2
+        );
+        let cure = "one of the two casts may be wrong, or the river exchanged the pool";
+        Problem::flag("heat-change", words, cure).in_file(&context.profile.file)
+    })
 }

@@ -59,3 +59,17 @@ pub(crate) fn spread(name: &str, pairs: impl IntoIterator<Item = (f64, f64)>) ->
     );
     spread
 }
+
+/// Holds what a formula gives for each row of a file against the row's value, within the row's tolerance.
+pub(crate) fn hold(file: &str, count: usize, computed: impl Fn(&Row) -> f64) {
+    let wrong: Vec<String> = rows(file, count)
+        .iter()
+        .filter_map(|row| {
+            let (value, expected) = (computed(row), row.number("value"));
+            let off = (value - expected).abs();
+            (off.is_nan() || off > row.number("tolerance"))
+                .then(|| format!("{}: {value} for {expected} ({})", row.text("id"), row.text("source")))
+        })
+        .collect();
+    assert!(wrong.is_empty(), "{}", wrong.join("\n"));
+}

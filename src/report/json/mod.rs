@@ -24,7 +24,7 @@ use super::sentence::{METHOD, caution};
 pub fn mix(context: &Context, answer: &MixAnswer) -> String {
     let site = context.site();
     let shown = MixJson {
-        head: head(context, &[]),
+        head: head(context, &context.fingerprint, &[]),
         levels: answer.mix.levels.iter().map(|d| level(site, d)).collect(),
         release: release(&answer.mix),
         targets: targets(site, &answer.mix),
@@ -42,7 +42,7 @@ pub fn mix(context: &Context, answer: &MixAnswer) -> String {
             .mix
             .warnings
             .iter()
-            .map(|p| WarningJson { kind: p.kind, text: p.sentence(System::Si) })
+            .map(|p| WarningJson { kind: p.kind, text: p.advice(System::Si) })
             .collect(),
         caution: caution(),
     };
@@ -54,7 +54,7 @@ pub fn pool(context: &Context, answer: &PoolAnswer) -> String {
     let site = context.site();
     let l = &answer.layering;
     let shown = PoolJson {
-        head: head(context, &answer.against_previous),
+        head: head(context, &answer.fingerprint, &answer.against_previous),
         layering: LayeringJson {
             surface_c: l.surface_c,
             bed_c: l.bed_c,
@@ -146,7 +146,7 @@ fn escaped(text: &str) -> String {
     out
 }
 
-fn head(context: &Context, more_flags: &[Problem]) -> Head {
+fn head(context: &Context, fingerprint: &str, more_flags: &[Problem]) -> Head {
     let site = context.site();
     let profile = &context.profile;
     let of = |weight: Weight| {
@@ -155,7 +155,7 @@ fn head(context: &Context, more_flags: &[Problem]) -> Head {
             .iter()
             .chain(more_flags)
             .filter(|p| p.weight == weight)
-            .map(|p| FlagJson { row: p.place.line, kind: p.kind, text: p.sentence(System::Si) })
+            .map(|p| FlagJson { row: p.place.line, kind: p.kind, text: p.advice(System::Si) })
             .collect()
     };
     Head {
@@ -166,7 +166,7 @@ fn head(context: &Context, more_flags: &[Problem]) -> Head {
         datum: site.datum.name().to_owned(),
         version: env!("CARGO_PKG_VERSION"),
         method: METHOD,
-        fingerprint: context.fingerprint.clone(),
+        fingerprint: fingerprint.to_owned(),
         profile: ProfileJson {
             file: profile.file.clone(),
             taken: profile.taken.map(|t| t.to_rfc3339()),

@@ -23,7 +23,7 @@ const FLAGS: usize = 12;
 
 /// The answer of `pool`.
 pub fn pool(context: &Context, answer: &PoolAnswer) -> String {
-    let mut out = head(context);
+    let mut out = head(context, &answer.fingerprint);
     out.push_str(&pool::layers(context, answer));
     out.push_str(&pool::outlets(context, answer));
     out.push_str(&drawn_column(context.site(), &context.profile, &[], context.system));
@@ -35,7 +35,7 @@ pub fn pool(context: &Context, answer: &PoolAnswer) -> String {
 
 /// The answer of `mix`.
 pub fn mix(context: &Context, answer: &MixAnswer) -> String {
-    let mut out = head(context);
+    let mut out = head(context, &context.fingerprint);
     out.push_str(&mix::body(context, answer));
     out.push_str(&cast_flags(context, &[]));
     out.push_str(&mix::not_checked(answer));
@@ -45,7 +45,7 @@ pub fn mix(context: &Context, answer: &MixAnswer) -> String {
 
 /// The answers of `pool` and of `mix` for the setting now, on one page.
 pub fn both(context: &Context, pool: &PoolAnswer, mix: &MixAnswer) -> String {
-    let mut out = head(context);
+    let mut out = head(context, &pool.fingerprint);
     out.push_str(&pool::layers(context, pool));
     out.push_str(&mix::body(context, mix));
     out.push_str(&cast_flags(context, &pool.against_previous));
@@ -73,7 +73,7 @@ pub fn check(named: &str, problems: &[Problem], system: System) -> String {
 }
 
 /// The head of every answer: site, pool, datum, cast, age, date, fingerprint.
-fn head(context: &Context) -> String {
+fn head(context: &Context, fingerprint: &str) -> String {
     let site = context.site();
     let profile = &context.profile;
     let mut out = harmless(&site.name);
@@ -96,8 +96,12 @@ fn head(context: &Context) -> String {
     let age = context.age_days.map_or_else(String::new, |d| format!(", {d:.0} days old"));
     let badge = Freshness::of(site, context.age_days).word();
     let _ = writeln!(out, "Cast  {taken}{age}: {badge}");
+    let unread = profile.flags.iter().filter(|p| p.kind == "cast-unreadable").count();
+    if unread > 0 {
+        let _ = writeln!(out, "      ! {unread} cast(s) of the site cannot be read, named below");
+    }
     let _ = writeln!(out, "For   {} ({})", context.on.format("%Y-%m-%d %H:%M %:z"), context.on_from.words());
-    let _ = writeln!(out, "From  inputs {}, gatemix {}\n", context.fingerprint, env!("CARGO_PKG_VERSION"));
+    let _ = writeln!(out, "From  inputs {}, gatemix {}\n", fingerprint, env!("CARGO_PKG_VERSION"));
     out
 }
 
@@ -116,7 +120,7 @@ fn list(heading: &str, problems: &[&Problem], rows: bool, system: System) -> Str
     for p in problems.iter().take(FLAGS) {
         let mark = if p.weight == Weight::Note { '-' } else { '!' };
         let row = p.place.line.filter(|_| rows).map_or_else(String::new, |l| format!(" (line {l})"));
-        out.push_str(&wrapped(&format!("  {mark} {}{row}: {}", p.kind, p.sentence(system)), 4));
+        out.push_str(&wrapped(&format!("  {mark} {}{row}: {}", p.kind, p.advice(system)), 4));
     }
     if problems.len() > FLAGS {
         let _ = writeln!(out, "  {} more; `gatemix check` lists all", problems.len() - FLAGS);
