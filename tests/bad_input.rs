@@ -12,6 +12,8 @@ mod docs;
 mod laws;
 #[path = "bad_input/mutated.rs"]
 mod mutated;
+#[path = "bad_input/site.rs"]
+mod site;
 #[path = "bad_input/table.rs"]
 mod table;
 #[path = "bad_input/text.rs"]
