@@ -26,7 +26,7 @@ pub fn is_wet(outlet: &Outlet, opening: f64, pool_m: f64) -> bool {
 /// by its rating or as a free overfall, whichever is less. `None` where nothing bounds it.
 pub fn capacity_m3s(site: &Site, outlet: &Outlet, opening: f64, pool_m: f64) -> Option<f64> {
     if outlet.is_crest() {
-        let free = crest_flow_m3s(outlet, pool_m)?;
+        let free = crest_flow_m3s(outlet, opening, pool_m)?;
         return Some(outlet.flow_max_m3s.map_or(free, |most| most.min(free)));
     }
     if outlet.flow_max_m3s.is_some() {
@@ -47,11 +47,11 @@ pub fn capacity_m3s(site: &Site, outlet: &Outlet, opening: f64, pool_m: f64) -> 
     }
 }
 
-/// Flow over an open crest under a pool, m3/s: the site's rating where it has one (held beyond its last row),
+/// Flow over a crest at an opening under a pool, m3/s: the site's rating where it has one (held beyond its last row),
 /// else a free overfall. `None` for an outlet that is no crest.
-pub fn crest_flow_m3s(outlet: &Outlet, pool_m: f64) -> Option<f64> {
+pub fn crest_flow_m3s(outlet: &Outlet, opening: f64, pool_m: f64) -> Option<f64> {
     let Kind::Crest { length_m, rating, .. } = &outlet.kind else { return None };
-    let head = (pool_m - outlet.centre_m).max(0.0);
+    let head = (pool_m - outlet.crest_m(opening)).max(0.0);
     let (Some(first), Some(last)) = (rating.first(), rating.last()) else {
         return Some(free_crest_flow_m3s(head, *length_m));
     };

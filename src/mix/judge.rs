@@ -93,7 +93,7 @@ pub fn refusals(site: &Site, setting: &Setting, pool_m: f64) -> Vec<Problem> {
             ));
             continue;
         }
-        let free = intake::crest_flow_m3s(outlet, pool_m);
+        let free = intake::crest_flow_m3s(outlet, gate.opening, pool_m);
         if let (true, Some(free)) = (intake::spills_by_itself(outlet), free)
             && (gate.flow_m3s - free).abs() > CREST_SHARE * free
         {

@@ -4,6 +4,7 @@
 //! reports every problem at once.
 
 mod check;
+mod limits;
 mod outlet;
 mod pool;
 mod raw;
@@ -13,7 +14,10 @@ use chrono::FixedOffset;
 use crate::target::Target;
 use crate::units::{Datum, Folder};
 
-pub use outlet::{Kind, Leakage, OpenPart, Opens, Outlet, Position, Shape};
+pub use limits::{
+    Avoid, Avoided, Bins, Block, Crew, GenerationLost, Layer, Limits, Outage, Reserved, ShareRule, Undrawn,
+};
+pub use outlet::{Kind, Leakage, OpenPart, Opens, Outlet, Position, SAME_OPENING, Shape};
 pub use pool::{Pool, RawRow, WidthSource};
 pub use raw::{Raw, RawOutlet, RawPool, RawTarget, RawWell};
 
@@ -37,8 +41,12 @@ pub struct Well {
     pub max_open: Option<usize>,
     /// Most head across the structure, m.
     pub max_head_loss_m: Option<f64>,
+    /// Least flow when it flows, m3/s.
+    pub min_flow_m3s: f64,
     /// Most flow, m3/s.
     pub max_flow_m3s: Option<f64>,
+    /// Area of the shaft in plan, m2.
+    pub plan_area_m2: Option<f64>,
 }
 
 /// Limits of the total release.
@@ -48,6 +56,8 @@ pub struct ReleaseLimits {
     pub min_m3s: Option<f64>,
     /// Most total release, m3/s.
     pub max_m3s: Option<f64>,
+    /// Total release that is wanted now, m3/s.
+    pub wanted_m3s: Option<f64>,
 }
 
 /// What is set at an outlet now.
@@ -195,8 +205,18 @@ pub struct Site {
     pub outlets: Vec<Outlet>,
     /// Limits of the total release.
     pub release: ReleaseLimits,
+    /// Limits beside those of single outlets, wells and the total.
+    pub limits: Limits,
+    /// Parts of the day with their own release; empty for a steady day.
+    pub blocks: Vec<Block>,
+    /// Inflow to the pool, m3/s.
+    pub inflow_m3s: Option<f64>,
+    /// Differences too small to order by.
+    pub bins: Bins,
     /// What is set now: outlet index and setting.
     pub now: Vec<(usize, SetNow)>,
+    /// Totals of wells now: well index and flow, m3/s.
+    pub now_wells: Vec<(usize, f64)>,
     /// Targets.
     pub targets: Vec<Target>,
     /// Thresholds of cold water, C.
@@ -219,6 +239,11 @@ impl Site {
     /// Index of an outlet by name.
     pub fn outlet(&self, name: &str) -> Option<usize> {
         self.outlets.iter().position(|o| o.name == name)
+    }
+
+    /// Index of a well by name.
+    pub fn well(&self, name: &str) -> Option<usize> {
+        self.wells.iter().position(|w| w.name == name)
     }
 
     /// Air pressure at the water surface, atm; at sea level where the altitude is not known.

@@ -2,6 +2,11 @@
 
 use std::f64::consts::PI;
 
+use super::limits::{Avoid, Crew, GenerationLost};
+
+/// Openings nearer than this are one position.
+pub const SAME_OPENING: f64 = 1e-6;
+
 /// Shape of a submerged opening.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub enum Shape {
@@ -52,7 +57,8 @@ pub enum Opens {
 pub struct Position {
     /// As it is called, such as `50` or `two leaves`.
     pub name: String,
-    /// Open share of the full height, 0 to 1.
+    /// Open share of the full height, 0 to 1. Of positions with crests of their own the lowest crest is 1, and the
+    /// others follow in equal parts.
     pub opening: f64,
     /// Crest elevation of this position, for stacked leaves, m.
     pub crest_m: Option<f64>,
@@ -111,6 +117,20 @@ pub struct Outlet {
     pub flow_max_m3s: Option<f64>,
     /// Leak when shut.
     pub leakage: Option<Leakage>,
+    /// Pool elevations at which it may be used, m.
+    pub pool_window_m: Option<(f64, f64)>,
+    /// Openings and flows to avoid.
+    pub avoid: Vec<Avoid>,
+    /// Most velocity through the open part, m/s.
+    pub max_entrance_m_s: Option<f64>,
+    /// Whether it may be moved while water passes its well or itself; absent, not checked.
+    pub moves_under_flow: Option<bool>,
+    /// What a move takes.
+    pub crew: Crew,
+    /// Power not made by water that passes here.
+    pub generation_lost: Option<GenerationLost>,
+    /// Its position is not confirmed.
+    pub uncertain: bool,
 }
 
 impl Outlet {
@@ -133,6 +153,26 @@ impl Outlet {
         self.centre_m - 0.5 * self.height_m()
     }
 
+    /// Crest at an opening, m: that of the nearest position where positions have crests of their own.
+    pub fn crest_m(&self, opening: f64) -> f64 {
+        let off = |p: &Position| (p.opening - opening).abs();
+        self.positions
+            .iter()
+            .filter(|p| p.crest_m.is_some())
+            .min_by(|a, b| off(a).total_cmp(&off(b)))
+            .and_then(|p| p.crest_m)
+            .unwrap_or(self.centre_m)
+    }
+
+    /// What the crew calls an opening: the name of a position, or percent.
+    pub fn opening_name(&self, opening: f64) -> String {
+        let named = self.positions.iter().find(|p| (p.opening - opening).abs() < SAME_OPENING);
+        match named.filter(|p| p.name.parse::<f64>().is_err()) {
+            Some(position) => position.name.clone(),
+            None => format!("{:.0} %", 100.0 * opening),
+        }
+    }
+
     /// The open part at an opening of 0 to 1 of the full height.
     ///
     /// A rectangle opens in proportion; of a circle the open part is the circular segment uncovered
@@ -142,12 +182,8 @@ impl Outlet {
         let height_m = full * opening.clamp(0.0, 1.0);
         let (area_m2, centre_m) = match self.kind {
             Kind::Crest { length_m, .. } => {
-                return OpenPart {
-                    area_m2: length_m,
-                    centre_m: self.centre_m,
-                    top_m: self.centre_m,
-                    height_m: 0.0,
-                };
+                let crest_m = self.crest_m(opening);
+                return OpenPart { area_m2: length_m, centre_m: crest_m, top_m: crest_m, height_m: 0.0 };
             }
             Kind::Orifice(Shape::Rectangle { width_m, .. }) => (height_m * width_m, self.centre(height_m)),
             Kind::Orifice(Shape::Circle { diameter_m }) => {

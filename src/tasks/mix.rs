@@ -122,7 +122,7 @@ fn spill(site: &Site, pool_m: f64, setting: &mut Setting) {
     for (outlet, o) in site.outlets.iter().enumerate() {
         let set = setting.gates.iter().any(|g| g.outlet == outlet);
         if !set && intake::spills_by_itself(o) {
-            let flow_m3s = intake::crest_flow_m3s(o, pool_m).unwrap_or(0.0);
+            let flow_m3s = intake::crest_flow_m3s(o, 1.0, pool_m).unwrap_or(0.0);
             if flow_m3s > 0.0 {
                 setting.gates.push(Gate { outlet, opening: 1.0, flow_m3s });
             }
@@ -153,7 +153,7 @@ fn parse_setting(site: &Site, sets: &[String], pool_m: f64) -> Result<Setting, F
                 .parse(text, Dimension::Flow)
                 .map_err(|error| Failure::Usage(format!("--set {set}: {error}")))?,
             None if intake::spills_by_itself(&site.outlets[outlet]) => {
-                intake::crest_flow_m3s(&site.outlets[outlet], pool_m).unwrap_or(0.0)
+                intake::crest_flow_m3s(&site.outlets[outlet], 1.0, pool_m).unwrap_or(0.0)
             }
             None => return Err(Failure::Usage(format!("--set {set}: give a flow, such as {name}=30"))),
         };

@@ -97,7 +97,8 @@ fn published_capacity_of_a_well_port() {
 /// Francis: 1.84 x 20 x 2^1.5 = 104.086118 m3/s; a rating of the site is preferred and runs straight between rows.
 #[test]
 fn published_flow_over_a_crest() {
-    let flow = |rating: &[(f64, f64)], pool_m: f64| crest_flow_m3s(&alone(crest(rating)), pool_m).unwrap();
+    let flow =
+        |rating: &[(f64, f64)], pool_m: f64| crest_flow_m3s(&alone(crest(rating)), 1.0, pool_m).unwrap();
     near(flow(&[], 60.0), 104.086118);
     near(flow(&[], 57.0), 0.0);
     let rated = [(0.5, 10.0), (1.0, 40.0), (3.0, 200.0)];
@@ -117,7 +118,7 @@ fn published_flow_over_a_crest() {
     assert_eq!(capacity(capped, None, 1.0), Some(90.0));
     let loose = RawOutlet { flow_max_m3s: Some(900.0), ..crest(&[]) };
     near(capacity(loose, None, 1.0).unwrap(), 104.086118);
-    assert_eq!(crest_flow_m3s(&alone(port("port", 20.0, 2.0, 3.0)), 60.0), None);
+    assert_eq!(crest_flow_m3s(&alone(port("port", 20.0, 2.0, 3.0)), 1.0, 60.0), None);
 }
 
 /// Opening, area, centre-line and top edge by hand.

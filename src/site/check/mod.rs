@@ -11,7 +11,7 @@ use crate::problem::{Problem, any_refused};
 use crate::target::Target;
 use crate::units::{Datum, say};
 
-use super::{Outlet, Pool, Raw, ReleaseLimits, Site, Whereabouts};
+use super::{Bins, Limits, Outlet, Pool, Raw, ReleaseLimits, Site, Whereabouts};
 
 /// Altitudes of settled land, m (choice, wide).
 const ALTITUDE_M: std::ops::RangeInclusive<f64> = -450.0..=6000.0;
@@ -49,7 +49,8 @@ impl Site {
             );
         }
         outlets::mixed_losses(raw, &mut problems);
-        let release = ReleaseLimits { min_m3s: raw.release_min_m3s, max_m3s: raw.release_max_m3s };
+        let release =
+            ReleaseLimits { min_m3s: raw.release_min_m3s, max_m3s: raw.release_max_m3s, wanted_m3s: None };
         if let (Some(min), Some(max)) = (release.min_m3s, release.max_m3s)
             && min > max
         {
@@ -81,7 +82,12 @@ impl Site {
                 wells: wells.into_iter().collect::<Option<_>>()?,
                 outlets: outlets.into_iter().collect::<Option<_>>()?,
                 release,
+                limits: Limits::default(),
+                blocks: Vec::new(),
+                inflow_m3s: None,
+                bins: Bins::default(),
                 now,
+                now_wells: Vec::new(),
                 targets: targets.into_iter().collect::<Option<_>>()?,
                 cold_water_c: raw.cold_water_c.clone(),
                 water: raw.water,

@@ -1,7 +1,7 @@
 //! Checks of wells and outlets.
 
 use crate::problem::Problem;
-use crate::site::{Kind, Outlet, Pool, Raw, RawOutlet, RawWell, Shape, Well};
+use crate::site::{Crew, Kind, Outlet, Pool, Position, Raw, RawOutlet, RawWell, Shape, Well};
 use crate::units::say;
 
 /// Least head a leak can be told at, m (choice).
@@ -72,7 +72,9 @@ pub(super) fn wells(raw: &Raw, pool: Option<&Pool>, problems: &mut Vec<Problem>)
             conduit_m: w.conduit_m?,
             max_open,
             max_head_loss_m: positive(w.max_head_loss_m, at("max_head_loss"), "max_head_loss", problems),
+            min_flow_m3s: 0.0,
             max_flow_m3s: positive(w.max_flow_m3s, at("max_flow"), "max_flow", problems),
+            plan_area_m2: None,
         })
     };
     raw.wells.iter().enumerate().map(build).collect()
@@ -188,11 +190,18 @@ pub(super) fn outlet(
         loss: o.loss,
         discharge: o.discharge,
         opens: o.opens,
-        positions: o.positions.clone(),
+        positions: leaves_by_crest(&o.positions),
         min_submergence_m: o.min_submergence_m,
         flow_min_m3s: o.flow_min_m3s.unwrap_or(0.0),
         flow_max_m3s: o.flow_max_m3s,
         leakage: o.leakage,
+        pool_window_m: None,
+        avoid: Vec::new(),
+        max_entrance_m_s: None,
+        moves_under_flow: None,
+        crew: Crew::default(),
+        generation_lost: None,
+        uncertain: false,
     };
     if let Some(pool) = pool
         && (built.sill_m() < pool.bed_m - 1e-9 || centre_m > pool.top_m())
@@ -349,4 +358,15 @@ pub(super) fn mixed_losses(raw: &Raw, problems: &mut Vec<Problem>) {
             );
         }
     }
+}
+
+/// Positions as given, those with crests of their own opened in equal parts from the highest crest to the lowest.
+fn leaves_by_crest(positions: &[Position]) -> Vec<Position> {
+    let mut crests: Vec<f64> = positions.iter().filter_map(|p| p.crest_m).collect();
+    crests.sort_by(|a, b| b.total_cmp(a));
+    let opening = |p: &Position| {
+        let place = crests.iter().position(|c| p.crest_m.is_some_and(|own| own.total_cmp(c).is_eq()))?;
+        Some((place + 1) as f64 / crests.len() as f64)
+    };
+    positions.iter().map(|p| Position { opening: opening(p).unwrap_or(p.opening), ..p.clone() }).collect()
 }

@@ -182,7 +182,7 @@ fn scenario_a_gate_at_or_above_the_water_is_dry() {
 #[test]
 fn scenario_a_crest_without_gates_passes_what_it_passes() {
     let site = checked(&capacities());
-    let free = crest_flow_m3s(&site.outlets[4], 60.0).unwrap();
+    let free = crest_flow_m3s(&site.outlets[4], 1.0, 60.0).unwrap();
     for share in [0.96, 1.0] {
         assert!(refused(&site, gate(4, share * free), 60.0).is_empty(), "{share}");
     }
