@@ -104,38 +104,56 @@ pub fn levels(
     groups
         .iter()
         .filter_map(|group| {
-            let mut first_m = None; // so that equal centre-lines have that one as their mean, to the last digit
-            let mut sums = [0.0_f64; 3]; // area, area x elevation above the first, flow
-            let mut lengths_m = [0.0_f64; 2]; // of open and of leaking crests
-            let mut outlets = Vec::new();
-            let mut height_m = 0.0_f64;
-            for &index in group {
-                let Some(&(opening, flow)) = flows[index].as_ref() else { continue };
-                let outlet = &site.outlets[index];
-                let leaking = opening <= 0.0;
-                let part = outlet.open_part(if leaking { 1.0 } else { opening });
-                let area = if leaking { intake::leak_area_m2(outlet, leak_place) } else { part.area_m2 };
-                sums[0] += area;
-                sums[1] += area * (part.centre_m - *first_m.get_or_insert(part.centre_m));
-                sums[2] += flow;
-                if let Kind::Crest { length_m, .. } = outlet.kind {
-                    lengths_m[usize::from(leaking)] += length_m;
-                }
-                height_m = height_m.max(part.height_m);
-                outlets.push(index);
-            }
-            let first = *outlets.first()?;
-            let opening = if site.outlets[first].is_crest() {
-                // a leak beside an open crest does not make that crest longer
-                let [open, leaking] = lengths_m;
-                Opening::Crest { length_m: if open > 0.0 { open } else { leaking }, form }
-            } else {
-                Opening::Port { angle_rad: site.outlets[first].angle_rad }
-            };
-            let sink = Sink { centre_m: first_m? + sums[1] / sums[0], flow_m3s: sums[2], opening };
-            Some(Level { outlets, sink, height_m })
+            let members: Vec<(usize, f64)> =
+                group.iter().filter_map(|&i| Some((i, flows[i].as_ref()?.0))).collect();
+            let seat = seat(site, &members, leak_place, form)?;
+            let flow_m3s = members.iter().filter_map(|&(i, _)| Some(flows[i]?.1)).sum();
+            let sink = Sink { centre_m: seat.centre_m, flow_m3s, opening: seat.opening };
+            let outlets = members.into_iter().map(|m| m.0).collect();
+            Some(Level { outlets, sink, height_m: seat.height_m })
         })
         .collect()
+}
+
+/// Where a level draws, whatever its flow.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Seat {
+    /// Area-weighted mean of its open parts, m.
+    pub centre_m: f64,
+    /// Kind and angle.
+    pub opening: Opening,
+    /// Tallest opening, m.
+    pub height_m: f64,
+}
+
+/// Where linked outlets draw as one, each with its opening, 0 for one that leaks; in the order of their group.
+/// `None` without outlets.
+pub fn seat(site: &Site, members: &[(usize, f64)], leak_place: f64, form: CrestForm) -> Option<Seat> {
+    let mut first_m = None; // so that equal centre-lines have that one as their mean, to the last digit
+    let mut sums = [0.0_f64; 2]; // area, area x elevation above the first
+    let mut lengths_m = [0.0_f64; 2]; // of open and of leaking crests
+    let mut height_m = 0.0_f64;
+    for &(index, opening) in members {
+        let outlet = &site.outlets[index];
+        let leaking = opening <= 0.0;
+        let part = outlet.open_part(if leaking { 1.0 } else { opening });
+        let area = if leaking { intake::leak_area_m2(outlet, leak_place) } else { part.area_m2 };
+        sums[0] += area;
+        sums[1] += area * (part.centre_m - *first_m.get_or_insert(part.centre_m));
+        if let Kind::Crest { length_m, .. } = outlet.kind {
+            lengths_m[usize::from(leaking)] += length_m;
+        }
+        height_m = height_m.max(part.height_m);
+    }
+    let first = members.first()?.0;
+    let opening = if site.outlets[first].is_crest() {
+        // a leak beside an open crest does not make that crest longer
+        let [open, leaking] = lengths_m;
+        Opening::Crest { length_m: if open > 0.0 { open } else { leaking }, form }
+    } else {
+        Opening::Port { angle_rad: site.outlets[first].angle_rad }
+    };
+    Some(Seat { centre_m: first_m? + sums[1] / sums[0], opening, height_m })
 }
 
 /// Opening and flow of every outlet that gives or could give water: set or leaking.

@@ -9,4 +9,4 @@ mod levels;
 pub use band::{Member, Perturbed, Spread, members};
 pub use blend::{Blend, Drawn, blend, draw_levels, overlapping, release, release_joined};
 pub use judge::{Mix, TargetStanding, judge, refusals};
-pub use levels::{Gate, Level, Setting, as_one, groups, levels};
+pub use levels::{Gate, Level, Seat, Setting, as_one, groups, levels, seat};
