@@ -25,11 +25,22 @@ pub struct Gate {
     pub flow_m3s: f64,
 }
 
-/// What is open, and how much passes. Flows of gates that share a well are given, not split.
+/// What is open, and how much passes.
 #[derive(Debug, Clone, Default, PartialEq)]
 pub struct Setting {
-    /// Gates in any order; the order changes nothing.
+    /// Open gates in any order; the order changes nothing.
     pub gates: Vec<Gate>,
+    /// What shut gates of wells leak, at opening 0, where a split has told it.
+    pub leaks: Vec<Gate>,
+    /// The same setting with an assumed loss at its least and at its greatest; empty where no loss is assumed.
+    pub at_losses: Vec<Setting>,
+}
+
+impl Setting {
+    /// Gates with given flows, nothing told of leaks.
+    pub fn of(gates: Vec<Gate>) -> Self {
+        Self { gates, ..Self::default() }
+    }
 }
 
 /// A level under a setting.
@@ -158,8 +169,9 @@ pub fn seat(site: &Site, members: &[(usize, f64)], leak_place: f64, form: CrestF
 
 /// Opening and flow of every outlet that gives or could give water: set or leaking.
 ///
-/// All ports of a well share its total in proportion to what they would pass at the head of the set flows; for one
-/// open gate that is the exact split by area and loss. Sums run in the order of the groups, never of the file.
+/// Leaks that a split has told follow their place in their range, the well's total kept. Where none is told, all
+/// ports of a well share its total in proportion to what they would pass at the head of the set flows; for one open
+/// gate that is the split by area and loss. Sums run in the order of the groups, never of the file.
 fn with_leaks(
     site: &Site,
     groups: &[Vec<usize>],
@@ -182,11 +194,26 @@ fn with_leaks(
             let loss = outlet.loss.unwrap_or(intake::ASSUMED_LOSS);
             let head = loss * (flow / area).powi(2) / (2.0 * G_M_S2);
             wells[well].head_m = wells[well].head_m.max(head);
-            wells[well].set_m3s += flow;
+            wells[well].total_m3s += flow;
+            wells[well].drawn_m3s += flow;
         }
     }
+    for gate in &setting.leaks {
+        let Some((outlet, well)) = site.outlets.get(gate.outlet).and_then(|o| Some((o, o.well?))) else {
+            continue;
+        };
+        let grown = intake::leak_area_m2(outlet, leak_place) / intake::leak_area_m2(outlet, 0.5);
+        flows[gate.outlet] = Some((0.0, gate.flow_m3s * grown));
+        wells[well].told = true;
+    }
     for &(i, outlet) in &order {
-        if flows[i].is_some() || outlet.centre_m >= pool_m {
+        let leaks = flows[i].is_some_and(|(opening, _)| opening <= 0.0);
+        if let (true, Some(well), Some((_, flow))) = (leaks, outlet.well, flows[i]) {
+            let told = setting.leaks.iter().find(|g| g.outlet == i).map_or(0.0, |g| g.flow_m3s);
+            wells[well].total_m3s += told;
+            wells[well].drawn_m3s += flow;
+        }
+        if flows[i].is_some() || outlet.centre_m >= pool_m || outlet.well.is_some_and(|w| wells[w].told) {
             continue;
         }
         let head = outlet.well.map_or(pool_m - outlet.centre_m, |w| wells[w].head_m);
@@ -194,26 +221,27 @@ fn with_leaks(
         if leak > 0.0 {
             flows[i] = Some((0.0, leak));
             if let Some(well) = outlet.well {
-                wells[well].leaks_m3s += leak;
+                wells[well].drawn_m3s += leak;
             }
         }
     }
     for &(i, outlet) in &order {
         if let (Some(well), Some(slot)) = (outlet.well.map(|w| wells[w]), flows[i].as_mut())
-            && well.leaks_m3s > 0.0
+            && (well.drawn_m3s - well.total_m3s).abs() > 0.0
         {
-            slot.1 *= well.set_m3s / (well.set_m3s + well.leaks_m3s);
+            slot.1 *= well.total_m3s / well.drawn_m3s;
         }
     }
     flows
 }
 
-/// What a well carries: the flows set at its gates, the leaks at the head those need.
+/// What a well carries, and what its ports would draw at the head the set flows need.
 #[derive(Clone, Copy, Default)]
 struct Drained {
     head_m: f64,
-    set_m3s: f64,
-    leaks_m3s: f64,
+    total_m3s: f64,
+    drawn_m3s: f64,
+    told: bool,
 }
 
 /// Several levels as one sink at their flow-weighted elevation; a crest among them draws as a port in a face.

@@ -172,7 +172,7 @@ impl Levels<'_> {
             unknown |= water.oxygen_mg_l.is_none();
             lanes[self.lanes.cold()] += self.weights[block] * flow * water.cold_share;
             if self.lanes.solids {
-                lanes[self.lanes.solids(block)] += flow * water.solids_mg_l;
+                lanes[self.lanes.solids(block)] += flow * water.solids_mg_l();
             }
         }
         unknown

@@ -10,7 +10,7 @@ use crate::withdrawal::{Opening, Sink, zone};
 
 /// The table is cut finer until half-way between two of its flows it errs by less than this, C and mg/L (choice).
 const APART: f64 = 5e-4;
-/// The same for the share of cold water and for density, kg/m3 (choice).
+/// The same for the share of cold water (choice).
 const APART_SHARE: f64 = 5e-3;
 /// The same for dissolved and suspended solids, as a share of the value (choice).
 const APART_SOLIDS: f64 = 1e-3;
@@ -30,13 +30,20 @@ pub struct Water {
     pub oxygen_mg_l: Option<f64>,
     /// Share of the flow from water colder than the threshold, 0 to 1.
     pub cold_share: f64,
-    /// Dissolved and suspended solids, mg/L.
-    pub solids_mg_l: f64,
-    /// Density of the blended water, kg/m3.
-    pub density_kg_m3: f64,
+    /// Dissolved solids, g/kg.
+    pub salt_g_per_kg: f64,
+    /// Suspended solids, mg/L.
+    pub suspended_mg_l: f64,
 }
 
-/// One knot: the root of the flow, and temperature, oxygen, cold share, solids and density there.
+impl Water {
+    /// Dissolved and suspended solids, mg/L.
+    pub fn solids_mg_l(&self) -> f64 {
+        self.salt_g_per_kg * water::pure_water_kg_m3(self.temperature_c) + self.suspended_mg_l
+    }
+}
+
+/// One knot: the root of the flow, and temperature, oxygen, cold share, dissolved and suspended solids there.
 #[derive(Debug, Clone, Copy)]
 struct Knot {
     root: f64,
@@ -54,8 +61,7 @@ pub struct Curve {
 }
 
 impl Curve {
-    /// Solves a level at the flows it needs, up to `most_m3s`. `cold_c` is the threshold of cold water;
-    /// `solids_kg_m3` the density of suspended grains. `None` for a level out of the water.
+    /// Solves a level at the flows it needs, up to `most_m3s`. `cold_c` is the threshold of cold water. `None` for a level out of the water.
     ///
     /// Flows at which the zone meets bed or surface are knots, since the release bends there.
     pub fn new(
@@ -64,25 +70,17 @@ impl Curve {
         opening: Opening,
         most_m3s: f64,
         cold_c: Option<f64>,
-        solids_kg_m3: f64,
     ) -> Option<Self> {
         let solve = |root: f64| {
             let sink = Sink { centre_m, flow_m3s: root * root, opening };
             let zone = zone(column, &sink, 1.0)?;
             let draw = zone.draw(column)?;
-            let density_kg_m3 = water::density_kg_m3(
-                draw.temperature_c,
-                draw.salt_g_per_kg,
-                draw.suspended_mg_l,
-                solids_kg_m3,
-            );
-            let dissolved = draw.salt_g_per_kg * water::pure_water_kg_m3(draw.temperature_c);
             let values = [
                 draw.temperature_c,
                 draw.oxygen_mg_l.unwrap_or(0.0),
                 cold_c.map_or(0.0, |c| zone.colder_share(column, c)),
-                dissolved + draw.suspended_mg_l,
-                density_kg_m3,
+                draw.salt_g_per_kg,
+                draw.suspended_mg_l,
             ];
             Some((Knot { root, values, oxygen_known: draw.oxygen_mg_l.is_some() }, zone))
         };
@@ -120,15 +118,15 @@ impl Curve {
     #[inline]
     pub fn at(&self, flow_m3s: f64) -> Water {
         let (low, high, share) = self.place(flow_m3s);
-        let [temperature_c, oxygen, cold_share, solids_mg_l, density_kg_m3] =
+        let [temperature_c, oxygen, cold_share, salt_g_per_kg, suspended_mg_l] =
             [0, 1, 2, 3, 4].map(|i| low.values[i] + share * (high.values[i] - low.values[i]));
         let known = low.oxygen_known && high.oxygen_known;
         Water {
             temperature_c,
             oxygen_mg_l: known.then_some(oxygen),
             cold_share,
-            solids_mg_l,
-            density_kg_m3,
+            salt_g_per_kg,
+            suspended_mg_l,
         }
     }
 
@@ -159,8 +157,8 @@ fn refine(solve: &impl Fn(f64) -> Option<Knot>, a: Knot, b: Knot, halvings: u32,
     let known = [a, knot, b].map(|k| k.oxygen_known);
     let near = off(0) < APART
         && off(2) < APART_SHARE
-        && off(3) < APART_SOLIDS * (1.0 + knot.values[3])
-        && off(4) < APART_SHARE
+        && off(3) < APART_SOLIDS * (0.1 + knot.values[3])
+        && off(4) < APART_SOLIDS * (1.0 + knot.values[4])
         && known.iter().all(|&k| k == known[0])
         && (!known[0] || off(1) < APART);
     if near {
@@ -195,14 +193,12 @@ impl Curves {
     }
 
     /// Solves what was asked for, on all cores.
-    pub fn solve(&mut self, column: &Column, most_m3s: f64, cold_c: Option<f64>, solids_kg_m3: f64) {
+    pub fn solve(&mut self, column: &Column, most_m3s: f64, cold_c: Option<f64>) {
         use rayon::prelude::*;
         self.curves = self
             .sinks
             .par_iter()
-            .map(|&(centre_m, opening)| {
-                Curve::new(column, centre_m, opening, most_m3s, cold_c, solids_kg_m3)
-            })
+            .map(|&(centre_m, opening)| Curve::new(column, centre_m, opening, most_m3s, cold_c))
             .collect();
     }
 
