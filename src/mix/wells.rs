@@ -8,6 +8,7 @@ use crate::profile::Column;
 use crate::site::Site;
 use crate::withdrawal::{CrestForm, Sink, zone};
 
+use super::band::{GREATEST_LOSS, LEAST_LOSS};
 use super::levels::{Gate, Seat, Setting, seat};
 
 /// Flows have settled when none moves by more than this share of its well's total.
@@ -56,12 +57,28 @@ struct Filling {
     gates: Vec<Gated>,
 }
 
-/// Flows of what is asked, with the state of each well that carries any. `loss` stands for losses the site does not
-/// give; `leak_place` as in [`intake::leak_m3s`].
+/// Flows of what is asked, with the state of each well that carries any.
 ///
 /// The water a gate takes in is that of its whole level, whichever wells and outlets draw there, so the wells are
-/// gone through in turn until no flow moves by more than 1e-9 of its well's total.
+/// gone through in turn until no flow moves by more than 1e-9 of its well's total. Where a loss is assumed the same
+/// setting at its least and greatest goes along, for the band.
 pub fn resolve(
+    site: &Site,
+    column: &Column,
+    groups: &[Vec<usize>],
+    asked: &Asked,
+    pool_m: f64,
+) -> (Setting, Vec<WellState>) {
+    let at = |loss: f64| at_loss(site, column, groups, asked, pool_m, loss);
+    let (mut setting, wells) = at(ASSUMED_LOSS);
+    if wells.iter().any(|w| w.assumed_loss) {
+        setting.at_losses = [LEAST_LOSS, GREATEST_LOSS].map(|loss| at(loss).0).into();
+    }
+    (setting, wells)
+}
+
+/// The same with `loss` for losses the site does not give.
+fn at_loss(
     site: &Site,
     column: &Column,
     groups: &[Vec<usize>],
@@ -92,7 +109,7 @@ pub fn resolve(
             wells.iter_mut().for_each(|w| w.state.settled = false);
         }
     }
-    let mut setting = Setting { gates: asked.direct.clone(), leaks: Vec::new() };
+    let mut setting = Setting::of(asked.direct.clone());
     for gate in wells.iter().flat_map(|w| &w.gates) {
         let flow = Gate { outlet: gate.outlet, opening: gate.opening, flow_m3s: gate.flow_m3s };
         if gate.opening > 0.0 {
