@@ -1,10 +1,287 @@
 //! Every feasible mix judged, rejected with reasons, ordered.
+//!
+//! Methods: `docs/methods.md`, section 10.
 
 mod choices;
 mod curve;
 mod goal;
+mod offers;
+mod ranking;
 mod search;
+mod seats;
+mod units;
+
+use chrono::NaiveDate;
+
+use crate::mix::limits::{self, Check, Of, Rule};
+use crate::mix::{Setting, groups};
+use crate::problem::Problem;
+use crate::profile::Profile;
+use crate::site::Site;
+use crate::withdrawal::{Opening, Sink, zone};
+
+use choices::{Lanes, Levels, MOST_BLOCKS, Slot};
+use goal::Goal;
+use offers::{Kitchen, Offers};
+use ranking::Decoder;
+use search::{Found, Task, WholeRule, ways};
+use seats::Level;
 
 pub use curve::{Curve, Curves, Water};
 pub use goal::Criterion;
+pub use ranking::{Extreme, Ranked, Ranking, Rejected};
 pub use search::Progress;
+
+/// Most mixes judged in one ranking (choice): about ten seconds of one core.
+const MOST_JUDGED: u64 = 2_000_000_000;
+/// Most ideas, as sets of open outlets (choice).
+const MOST_IDEAS: usize = 2_000_000;
+/// Halvings that find the flow up to which a level keeps out of a layer.
+const HALVINGS: usize = 50;
+/// Curves reach this much beyond the release, for leaks.
+const BEYOND: f64 = 1.1;
+
+/// What a ranking is asked.
+pub struct Question<'a> {
+    /// The site.
+    pub site: &'a Site,
+    /// The water before it.
+    pub profile: &'a Profile,
+    /// The day.
+    pub date: NaiveDate,
+    /// Parts of the day: share of it, and total release, m3/s. One part for a steady day.
+    pub blocks: &'a [(f64, f64)],
+    /// What is set now, where it is known.
+    pub now: Option<&'a Setting>,
+    /// Temperature released now, C.
+    pub now_c: Option<f64>,
+    /// Steps the release is cut into.
+    pub steps: usize,
+    /// Criteria, the first first.
+    pub order: &'a [Criterion],
+    /// Outlets left out.
+    pub without: &'a [usize],
+}
+
+/// Why there is no ranking.
+#[derive(Debug, Clone, PartialEq)]
+pub enum Stopped {
+    /// The caller stopped it.
+    Cancelled,
+    /// It cannot be made.
+    Refused(Problem),
+}
+
+/// Ranks every mix.
+///
+/// # Errors
+/// A site with more mixes than can be judged; a caller who stops it.
+pub fn rank(question: &Question, progress: Progress) -> Result<Ranking, Stopped> {
+    let Question { site, profile, .. } = *question;
+    let groups = groups(site);
+    let units = units::units(site, &groups, profile.pool_m, question.without).map_err(Stopped::Refused)?;
+    let mut curves = Curves::default();
+    let seats =
+        seats::levels(site, &groups, &units, profile.pool_m, &mut curves).map_err(Stopped::Refused)?;
+    let alone = offers::alone(site, &units, &mut curves);
+    let spilt: f64 = units.iter().filter_map(|u| u.spills_m3s).sum();
+    let mut flows_m3s = [0.0; MOST_BLOCKS];
+    for (flow, block) in flows_m3s.iter_mut().zip(question.blocks) {
+        *flow = (block.1 - spilt).max(0.0);
+    }
+    let most_m3s = BEYOND * (question.blocks.iter().map(|b| b.1).fold(0.0, f64::max) + spilt);
+    curves.solve(&profile.column, most_m3s, site.cold_water_c.first().copied());
+    let slots = slots(question, &seats, &curves, most_m3s);
+    let weights: Vec<f64> = question.blocks.iter().map(|b| b.0).collect();
+    let lanes = Lanes {
+        blocks: question.blocks.len(),
+        solids: site.limits.solids_max_mg_l.is_some(),
+        shares: site.limits.shares.len(),
+    };
+    let levels = Levels { slots: &slots, curves: &curves, lanes, weights: &weights };
+    let mut level_of = vec![0; site.outlets.len()];
+    for (level, group) in groups.iter().enumerate() {
+        for &outlet in group {
+            level_of[outlet] = level;
+        }
+    }
+    let nearest = |outlet: usize, opening: f64| {
+        let off = |o: &&(f64, usize)| (o.0 - opening).abs();
+        alone[outlet].iter().min_by(|a, b| off(a).total_cmp(&off(b))).map(|o| o.1)
+    };
+    let kitchen = Kitchen {
+        question,
+        units: &units,
+        seats: &seats,
+        level_of: &level_of,
+        levels: &levels,
+        alone: &nearest,
+        flows_m3s,
+    };
+    let offers = kitchen.offers();
+    let (rules, told) = whole_rules(question, !slots.is_empty());
+    let counts: Vec<Vec<u64>> = offers.choices.iter().map(choices::Choices::counts).collect();
+    let to_judge = ways(&counts, question.steps)[question.steps];
+    let ideas = offers.masks.iter().fold(1_usize, |n, (masks, _)| n.saturating_mul(masks.len().max(1)));
+    if to_judge > MOST_JUDGED || ideas > MOST_IDEAS || offers.examined == u64::MAX {
+        return Err(Stopped::Refused(Problem::refused(
+            "too-many",
+            format!("there are {to_judge} mixes to judge, more than {MOST_JUDGED}"),
+            "take a coarser --step, give max_open of the wells, or leave gates out with --without",
+        )));
+    }
+    let goal = Goal::new(site, question.date, question.order, question.blocks.len() == 1);
+    let task = Task {
+        units: &offers.choices,
+        levels: &levels,
+        goal: &goal,
+        rules: &rules,
+        steps: question.steps,
+        ideas,
+        progress,
+    };
+    let found = search::search(&task).ok_or(Stopped::Cancelled)?;
+    let decoder =
+        Decoder { question, units: &units, offers: &offers, level_of: &level_of, flows_m3s };
+    Ok(assembled(&decoder, &found, &told, &offers, to_judge))
+}
+
+/// What was found, as mixes with names.
+fn assembled(
+    decoder: &Decoder,
+    found: &Found,
+    told: &[(Rule, Of, f64, f64)],
+    offers: &Offers,
+    to_judge: u64,
+) -> Ranking {
+    let mut best: Vec<(f64, u64)> = found.best.iter().copied().filter(|b| b.1 != u64::MAX).collect();
+    best.sort_by(|a, b| a.0.total_cmp(&b.0).then(a.1.cmp(&b.1)));
+    let extreme = |at: (f64, u64)| (at.1 != u64::MAX).then(|| Extreme { value: at.0, mix: decoder.mix(at.1) });
+    let both = |low, high| Some([extreme(low)?, extreme(high)?]);
+    let mut rejected: Vec<Rejected> = offers
+        .misses
+        .iter()
+        .map(|m| Rejected { check: m.check, count: m.count, open: m.open.clone() })
+        .collect();
+    for (&(rule, of, bound, sign), missed) in told.iter().zip(&found.missed) {
+        if missed.count > 0 {
+            let room = -missed.nearest.0;
+            let mix = decoder.mix(missed.nearest.1);
+            let open = mix.asked.first().map_or_else(Vec::new, |a| {
+                a.direct.iter().map(|g| (g.outlet, g.opening)).chain(a.open.iter().copied()).collect()
+            });
+            let check = Check { rule, of, found: bound + sign * missed.nearest.0, bound, room };
+            rejected.push(Rejected { check, count: missed.count, open });
+        }
+    }
+    rejected.sort_by_key(|r| (r.check.rule, r.check.of));
+    let mut trade: Vec<Extreme> = Vec::new();
+    for at in &found.trade {
+        if at.1 != u64::MAX && trade.last().is_none_or(|last| at.0 > last.value) {
+            trade.extend(extreme(*at));
+        }
+    }
+    Ranking {
+        mixes: best.iter().map(|b| decoder.mix(b.1)).collect(),
+        keys: best.iter().map(|b| b.0).collect(),
+        rejected,
+        examined: offers.examined,
+        judged: found.judged,
+        skipped: offers.examined - to_judge + found.skipped,
+        allowed: found.allowed,
+        attainable_c: both(found.coldest, found.warmest),
+        attainable_oxygen_mg_l: both(found.least_oxygen, found.most_oxygen),
+        trade,
+    }
+}
+
+/// Levels that several units draw through, with the flow up to which each keeps out of layers not to be drawn.
+fn slots(question: &Question, seats: &[Level], curves: &Curves, most_m3s: f64) -> Vec<Slot> {
+    let undrawn = question.site.limits.undrawn.len();
+    seats
+        .iter()
+        .filter(|s| s.slot.is_some())
+        .map(|seat| Slot {
+            curves: seat.curves.clone(),
+            kept_m3s: (0..undrawn)
+                .map(|layer| {
+                    let kept = |curve: &Option<usize>| {
+                        let sink = curve.and_then(|c| curves.sink(c));
+                        sink.map_or(f64::INFINITY, |sink| kept_m3s(question, layer, sink, most_m3s))
+                    };
+                    seat.curves.iter().map(kept).collect()
+                })
+                .collect(),
+        })
+        .collect()
+}
+
+/// Greatest flow at which a level keeps out of a layer, m3/s: a zone only grows with its flow.
+fn kept_m3s(question: &Question, layer: usize, (centre_m, opening): (f64, Opening), most_m3s: f64) -> f64 {
+    let column = &question.profile.column;
+    let draws = |flow_m3s: f64| {
+        zone(column, &Sink { centre_m, flow_m3s, opening }, 1.0).is_some_and(|zone| {
+            let mut checks = Vec::new();
+            limits::level(question.site, column, &zone, Of::Whole, &mut checks);
+            checks.get(layer).is_some_and(Check::broken)
+        })
+    };
+    if !draws(most_m3s) {
+        return f64::INFINITY;
+    }
+    let (mut low, mut high) = (0.0, most_m3s);
+    for _ in 0..HALVINGS {
+        let middle = 0.5 * (low + high);
+        if draws(middle) {
+            high = middle;
+        } else {
+            low = middle;
+        }
+    }
+    low
+}
+
+/// Rules of the whole mix that depend on which mix it is; beside each its rule, what it is of, its bound, and on
+/// which side of the bound a miss lies.
+fn whole_rules(question: &Question, shared: bool) -> (Vec<WholeRule>, Vec<(Rule, Of, f64, f64)>) {
+    let l = &question.site.limits;
+    let mut rules: Vec<(WholeRule, (Rule, Of, f64, f64))> = Vec::new();
+    if let Some(most) = l.solids_max_mg_l {
+        rules.push((WholeRule::Solids(most), (Rule::SolidsMax, Of::Whole, most, 1.0)));
+    }
+    for (i, share) in l.shares.iter().enumerate() {
+        if let Some(least) = share.min {
+            rules.push((WholeRule::ShareMin(i, least), (Rule::ShareMin, Of::Share(i), least, -1.0)));
+        }
+        if let Some(most) = share.max {
+            rules.push((WholeRule::ShareMax(i, most), (Rule::ShareMax, Of::Share(i), most, 1.0)));
+        }
+    }
+    let hours = l.change_hours.unwrap_or(1.0);
+    let changes = [
+        (Rule::TemperatureChangePerHour, l.temperature_change_c_per_hour.map(|c| c * hours)),
+        (Rule::TemperatureChangePerDay, l.temperature_change_c_per_day.map(|c| c * (hours / 24.0).max(1.0))),
+    ];
+    for (rule, most) in changes {
+        if let (Some(from_c), Some(most_c)) = (question.now_c, most) {
+            rules.push((
+                WholeRule::TemperatureChange { from_c, most_c },
+                (rule, Of::Whole, most_c, 1.0),
+            ));
+        }
+    }
+    if question.now.is_some() {
+        if let Some(most) = l.max_moves {
+            rules.push((WholeRule::Moves(most as f64), (Rule::MaxMoves, Of::Whole, most as f64, 1.0)));
+        }
+        if let Some(most) = l.max_crew_hours {
+            rules.push((WholeRule::CrewHours(most), (Rule::MaxCrewHours, Of::Whole, most, 1.0)));
+        }
+    }
+    if shared {
+        for layer in 0..l.undrawn.len() {
+            rules.push((WholeRule::Undrawn(layer), (Rule::Undrawn, Of::Whole, 0.0, 1.0)));
+        }
+    }
+    rules.into_iter().unzip()
+}

@@ -18,6 +18,8 @@ use super::goal::{Day, Goal, TRADE_STEP_C};
 /// Parts that stand alone are taken together while they make no more rows than this (choice: they stay in the
 /// nearest cache).
 const MOST_ROWS: usize = 60_000;
+/// Rows judged side by side (choice).
+const SIDE_BY_SIDE: usize = 64;
 /// Bins of the trade curve.
 const TRADE_BINS: usize = 400;
 /// A rule is kept when it is missed by less than this share of its bound: round-off.
@@ -52,12 +54,12 @@ pub(super) enum WholeRule {
 
 /// What the search needs.
 pub(super) struct Task<'a> {
-    pub(super) units: Vec<Choices>,
-    pub(super) levels: Levels<'a>,
+    pub(super) units: &'a [Choices],
+    pub(super) levels: &'a Levels<'a>,
     pub(super) goal: &'a Goal,
     pub(super) rules: &'a [WholeRule],
-    /// What leaves the dam whatever is set: sums as [`Lanes`] places them, and whether its oxygen is unknown.
-    pub(super) always: (Vec<f64>, bool),
+    /// Steps of the release.
+    pub(super) steps: usize,
     /// Number of ideas.
     pub(super) ideas: usize,
     pub(super) progress: Progress<'a>,
@@ -85,7 +87,7 @@ pub(super) struct Found {
     /// Mixes allowed.
     pub(super) allowed: u64,
     /// Best key and number of each idea; greatest values where none is allowed.
-    pub(super) best: Vec<(u64, u64)>,
+    pub(super) best: Vec<At>,
     /// Coldest, warmest, least and most oxygen of allowed mixes.
     pub(super) coldest: At,
     pub(super) warmest: At,
@@ -104,7 +106,7 @@ impl Found {
             judged: 0,
             skipped: 0,
             allowed: 0,
-            best: vec![(u64::MAX, u64::MAX); ideas],
+            best: vec![none; ideas],
             coldest: none,
             warmest: (f64::NEG_INFINITY, u64::MAX),
             least_oxygen: none,
@@ -119,7 +121,7 @@ impl Found {
         self.skipped += other.skipped;
         self.allowed += other.allowed;
         for (a, b) in self.best.iter_mut().zip(&other.best) {
-            *a = (*a).min(*b);
+            lower(a, *b);
         }
         lower(&mut self.coldest, other.coldest);
         higher(&mut self.warmest, other.warmest);
@@ -196,9 +198,9 @@ pub(super) fn ways(counts: &[Vec<u64>], steps: usize) -> Vec<u64> {
 }
 
 /// Judges every mix of a task. `None` when the caller stopped it.
-pub(super) fn search(task: Task) -> Option<Found> {
-    let (head, tail) = arranged(&task);
-    let steps = task.units.first().map_or(0, |u| u.by_share.len().saturating_sub(1));
+pub(super) fn search(task: &Task) -> Option<Found> {
+    let (head, tail) = arranged(task);
+    let steps = task.steps;
     // how many mixes the rest of the head and the tail make of what is left
     let counts: Vec<Vec<u64>> = head.iter().map(Choices::counts).collect();
     let completions: Vec<Vec<u64>> = (0..=head.len())
@@ -209,7 +211,7 @@ pub(super) fn search(task: Task) -> Option<Found> {
         .collect();
     let lanes = task.levels.lanes;
     let walk = Walk {
-        task: &task,
+        task,
         head: &head,
         tail: Tail::new(&tail, lanes),
         completions,
@@ -241,8 +243,7 @@ pub(super) fn search(task: Task) -> Option<Found> {
 /// Which parts are taken one inside the other, and the rest taken together. Parts that share a level stand beside
 /// each other; where they make few pairs they too are taken together. The head is never empty.
 fn arranged(task: &Task) -> (Vec<Choices>, Choices) {
-    let steps = task.units.first().map_or(1, |u| u.by_share.len());
-    let mut nothing = Choices { by_share: vec![Vec::new(); steps], units: 0 };
+    let mut nothing = Choices { by_share: vec![Vec::new(); task.steps + 1], units: 0 };
     nothing.by_share[0].push(Choice {
         lanes: vec![0.0; task.levels.lanes.count()],
         unknown: false,
@@ -253,14 +254,14 @@ fn arranged(task: &Task) -> (Vec<Choices>, Choices) {
     let undrawn = task.rules.iter().any(|r| matches!(r, WholeRule::Undrawn(_)));
     let mut head = Vec::new();
     let mut alone = Vec::new();
-    for island in islands(&task.units) {
+    for island in islands(task.units) {
         let shares = island.len() > 1;
         let joined = island.iter().try_fold(nothing.clone(), |so_far, &unit| {
             let fits = so_far.pairs(&task.units[unit]) <= MOST_ROWS;
             (fits && !(shares && undrawn)).then(|| together(&so_far, &task.units[unit]))
         });
         match joined {
-            Some(joined) => alone.push(settled(joined, &task.levels)),
+            Some(joined) => alone.push(settled(joined, task.levels)),
             None => head.extend(island.into_iter().map(|unit| task.units[unit].clone())),
         }
     }
@@ -325,13 +326,11 @@ struct Walk<'a> {
 
 impl<'a> Walk<'a> {
     fn begin(&self, share: usize, choice: &'a Choice, steps: usize, found: &mut Found) {
-        let (always, unknown) = &self.task.always;
-        let lanes = always.len();
+        let lanes = self.task.levels.lanes.count();
         // one set of sums for each depth, made once
         let mut stack: Vec<Sums<'a>> = (0..=self.head.len() + 1)
-            .map(|_| Sums { lanes: vec![0.0; lanes], unknown: *unknown, idea: 0, number: 0, parts: Vec::new() })
+            .map(|_| Sums { lanes: vec![0.0; lanes], unknown: false, idea: 0, number: 0, parts: Vec::new() })
             .collect();
-        stack[0].lanes.copy_from_slice(always);
         put(&mut stack, 0, choice);
         self.deeper(1, steps - share, &mut stack, found);
     }
@@ -354,19 +353,16 @@ impl<'a> Walk<'a> {
 
     /// The head is complete: what its parts share is made good, and every row of the tail judged.
     fn complete(&self, depth: usize, left: usize, stack: &mut [Sums<'a>], found: &mut Found) {
-        let (below, above) = stack.split_at_mut(depth + 1);
-        let (head, sums) = (&below[depth], &mut above[0]);
+        let head = &mut stack[depth];
         if self.checks_undrawn && self.draws_undrawn(head, self.completions[depth][left], found) {
             return;
         }
-        sums.lanes.copy_from_slice(&head.lanes);
-        sums.unknown = head.unknown | self.task.levels.join(&head.parts, &mut sums.lanes);
-        (sums.idea, sums.number) = (head.idea, head.number);
+        head.unknown |= self.task.levels.join(&head.parts, &mut head.lanes);
         match self.task.levels.lanes.blocks {
-            1 => self.judge::<1>(left, sums, found),
-            2 => self.judge::<2>(left, sums, found),
-            3 => self.judge::<3>(left, sums, found),
-            _ => self.judge::<MOST_BLOCKS>(left, sums, found),
+            1 => self.judge::<1>(left, head, found),
+            2 => self.judge::<2>(left, head, found),
+            3 => self.judge::<3>(left, head, found),
+            _ => self.judge::<MOST_BLOCKS>(left, head, found),
         }
     }
 
@@ -400,70 +396,88 @@ impl<'a> Walk<'a> {
         draws
     }
 
-    /// Judges the head with every row of the tail that takes what is left.
+    /// Judges the head with every row of the tail that takes what is left, some rows at a time: first what can be
+    /// computed side by side, then what each mix is the best of.
     fn judge<const B: usize>(&self, left: usize, head: &Sums, found: &mut Found) {
+        let (from, to) = (self.tail.starts[left], self.tail.starts[left + 1]);
+        found.judged += (to - from) as u64;
+        let mut row = from;
+        while row < to {
+            let next = (row + SIDE_BY_SIDE).min(to);
+            self.judge_rows::<B>(row, next, head, found);
+            row = next;
+        }
+    }
+
+    #[inline]
+    fn judge_rows<const B: usize>(&self, from: usize, to: usize, head: &Sums, found: &mut Found) {
         let Task { levels, goal, rules, .. } = self.task;
         let lanes = levels.lanes;
-        let (from, to) = (self.tail.starts[left], self.tail.starts[left + 1]);
-        let column = |lane: usize| &self.tail.lanes[lane][from..to];
-        let flow: [&[f64]; B] = std::array::from_fn(|b| column(3 * b));
-        let heat: [&[f64]; B] = std::array::from_fn(|b| column(3 * b + 1));
-        let oxygen: [&[f64]; B] = std::array::from_fn(|b| column(3 * b + 2));
+        let n = to - from;
+        let column = |lane: usize| &self.tail.lanes[lane][from..to][..n];
+        let water: [[&[f64]; 3]; B] = std::array::from_fn(|b| [3 * b, 3 * b + 1, 3 * b + 2].map(column));
         let [cold, cost, hours] = [lanes.cold(), lanes.cost(), lanes.hours()].map(column);
-        let (idea, number) = (&self.tail.idea[from..to], &self.tail.number[from..to]);
-        let unknown = &self.tail.unknown[from..to];
+        let unknown = &self.tail.unknown[from..to][..n];
         let statistics = if B == 1 { 1 } else { 3 };
-        let h = &head.lanes;
-        found.judged += (to - from) as u64;
-        for i in 0..to - from {
+        let h = head.lanes.as_slice();
+        let of_head: [[f64; 3]; B] = std::array::from_fn(|b| [h[3 * b], h[3 * b + 1], h[3 * b + 2]]);
+        let weights: [f64; B] = std::array::from_fn(|b| if B == 1 { 1.0 } else { levels.weights[b] });
+        let [head_cold, head_cost, head_hours] = [lanes.cold(), lanes.cost(), lanes.hours()].map(|l| h[l]);
+        let mut key = [0.0; SIDE_BY_SIDE];
+        let mut mean = [[0.0; SIDE_BY_SIDE]; 2]; // temperature and oxygen
+        let mut far = [0.0; SIDE_BY_SIDE];
+        for i in 0..n {
             let mut day = Day {
                 temperature_c: [0.0, f64::NEG_INFINITY, f64::INFINITY],
                 oxygen_mg_l: [0.0, f64::INFINITY],
-                oxygen_known: !(head.unknown || unknown[i]),
+                oxygen_known: !(head.unknown | unknown[i]),
                 cold_share: 0.0,
-                cost: h[lanes.cost()] + cost[i],
-                hours: h[lanes.hours()] + hours[i],
+                cost: head_cost + cost[i],
+                hours: head_hours + hours[i],
             };
             let mut mean_flow = 0.0;
+            let mut per = 0.0;
             for b in 0..B {
-                let flow = h[3 * b] + flow[b][i];
-                let per = 1.0 / flow;
-                let t = (h[3 * b + 1] + heat[b][i]) * per;
-                let o = (h[3 * b + 2] + oxygen[b][i]) * per;
-                let weight = if B == 1 { 1.0 } else { levels.weights[b] };
-                mean_flow += weight * flow;
-                day.temperature_c[0] += weight * t;
-                day.oxygen_mg_l[0] += weight * o;
+                let flow = of_head[b][0] + water[b][0][i];
+                per = 1.0 / flow;
+                let t = (of_head[b][1] + water[b][1][i]) * per;
+                let o = (of_head[b][2] + water[b][2][i]) * per;
+                mean_flow += weights[b] * flow;
+                day.temperature_c[0] += weights[b] * t;
+                day.oxygen_mg_l[0] += weights[b] * o;
                 if B > 1 {
                     day.temperature_c[1] = day.temperature_c[1].max(t);
                     day.temperature_c[2] = day.temperature_c[2].min(t);
+                    day.oxygen_mg_l[1] = day.oxygen_mg_l[1].min(o);
                 }
-                day.oxygen_mg_l[1] = day.oxygen_mg_l[1].min(o);
             }
-            day.cold_share = (h[lanes.cold()] + cold[i]) / mean_flow;
+            day.cold_share = (head_cold + cold[i]) * if B == 1 { per } else { 1.0 / mean_flow };
+            far[i] = goal.distance_c(&day, statistics);
+            key[i] = goal.key(&day, statistics, far[i]);
+            mean[0][i] = day.temperature_c[0];
+            mean[1][i] = day.oxygen_mg_l[0];
+        }
+        let (idea, number) = (&self.tail.idea[from..to][..n], &self.tail.number[from..to][..n]);
+        for i in 0..n {
             let number = head.number + number[i];
-            if !rules.is_empty() && !self.keeps(head, from + i, number, &day, found) {
+            let (t, o) = (mean[0][i], mean[1][i]);
+            if !rules.is_empty() && !self.keeps(head, from + i, number, t, found) {
                 continue;
             }
             found.allowed += 1;
-            let distance = goal.distance_c(&day, statistics);
-            let key = goal.key(&day, statistics, distance);
-            let best = &mut found.best[head.idea + idea[i]];
-            if (key, number) < *best {
-                *best = (key, number);
-            }
-            lower(&mut found.coldest, (day.temperature_c[0], number));
-            higher(&mut found.warmest, (day.temperature_c[0], number));
-            if day.oxygen_known {
-                lower(&mut found.least_oxygen, (day.oxygen_mg_l[0], number));
-                higher(&mut found.most_oxygen, (day.oxygen_mg_l[0], number));
-                higher(&mut found.trade[trade_bin(distance)], (day.oxygen_mg_l[0], number));
+            lower(&mut found.best[head.idea + idea[i]], (key[i], number));
+            lower(&mut found.coldest, (t, number));
+            higher(&mut found.warmest, (t, number));
+            if !(head.unknown | unknown[i]) {
+                lower(&mut found.least_oxygen, (o, number));
+                higher(&mut found.most_oxygen, (o, number));
+                higher(&mut found.trade[trade_bin(far[i])], (o, number));
             }
         }
     }
 
     /// Whether a mix keeps the rules of the whole; each one it misses is counted.
-    fn keeps(&self, head: &Sums, row: usize, number: u64, day: &Day, found: &mut Found) -> bool {
+    fn keeps(&self, head: &Sums, row: usize, number: u64, temperature_c: f64, found: &mut Found) -> bool {
         let lanes = self.task.levels.lanes;
         let sum = |lane: usize| head.lanes[lane] + self.tail.lanes[lane][row];
         let blocks = 0..lanes.blocks;
@@ -485,10 +499,10 @@ impl<'a> Walk<'a> {
                     (worst - most, most)
                 }
                 WholeRule::TemperatureChange { from_c, most_c } => {
-                    ((day.temperature_c[0] - from_c).abs() - most_c, most_c)
+                    ((temperature_c - from_c).abs() - most_c, most_c)
                 }
                 WholeRule::Moves(most) => (sum(lanes.moves()) - most, most),
-                WholeRule::CrewHours(most) => (day.hours - most, most),
+                WholeRule::CrewHours(most) => (sum(lanes.hours()) - most, most),
                 WholeRule::Undrawn(_) => continue,
             };
             if miss > ROUND_OFF * (1.0 + bound) {
@@ -503,13 +517,11 @@ impl<'a> Walk<'a> {
 
 /// Bin of the trade curve that holds a distance from the preferred temperature, C; the last holds all beyond.
 #[inline]
-#[expect(
-    clippy::cast_possible_truncation,
-    clippy::cast_sign_loss,
-    reason = "the cast saturates and drops the part below one"
-)]
+#[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "a whole number from 0 to the last bin")]
 fn trade_bin(distance_c: f64) -> usize {
-    ((distance_c * (1.0 / TRADE_STEP_C)) as usize).min(TRADE_BINS - 1)
+    let last = (TRADE_BINS - 1) as f64;
+    let bin = distance_c * (1.0 / TRADE_STEP_C);
+    (if bin < last { bin } else { last }) as u32 as usize
 }
 
 /// Sums at `depth + 1` are those at `depth` with a choice put on.
