@@ -57,8 +57,6 @@ const MOVE_STEPS: f64 = 1024.0;
 /// Cost of moves is told apart to a tenth, crew hours to a quarter (choice).
 const COST_STEP: f64 = 0.1;
 const HOUR_STEP: f64 = 0.25;
-/// Distance of the trade curve per bin, C (choice: finer than any bin, so that the curve is one).
-pub(super) const TRADE_STEP_C: f64 = 0.1;
 /// A miss smaller than this is none, C and mg/L: round-off of a blend.
 const ROUND_OFF: f64 = 1e-9;
 
@@ -91,18 +89,17 @@ impl Wanted {
     }
 }
 
-/// What a day's water is judged by: over time, as a gauge sees it.
+/// What a day's water is judged by, over time as a gauge sees it; a number of mixes at once has a range of each.
 #[derive(Debug, Clone, Copy)]
 pub(super) struct Day {
-    /// Time mean, greatest and least temperature, C; of a steady day only the first counts.
-    pub(super) temperature_c: [f64; 3],
-    /// Time mean and least oxygen, mg/L.
+    /// Least and greatest of the time mean, the greatest and the least temperature of the day, C; of a steady day only
+    /// the first counts.
+    pub(super) temperature_c: [[f64; 2]; 3],
+    /// Greatest of the time mean and of the least oxygen, mg/L.
     pub(super) oxygen_mg_l: [f64; 2],
-    /// Oxygen is known in every block.
-    pub(super) oxygen_known: bool,
-    /// Cold water as a share of the release.
+    /// Least cold water, as a share of the release.
     pub(super) cold_share: f64,
-    /// Cost of moves, and crew hours.
+    /// Least cost of moves, and crew hours.
     pub(super) cost: f64,
     pub(super) hours: f64,
 }
@@ -154,31 +151,29 @@ impl Goal {
         }
     }
 
-    /// Distance from the preferred temperature, C; where no rule prefers one, from the range. `statistics` is 1 for a
-    /// steady day, else 3.
+    /// Least distance from the preferred temperature, C; where no rule prefers one, from the range. `statistics` is 1
+    /// for a steady day, else 3.
     #[inline]
     pub(super) fn distance_c(&self, day: &Day, statistics: usize) -> f64 {
         let mut distance = 0.0;
-        for (w, t) in self.wanted.iter().zip(day.temperature_c).take(statistics) {
-            distance = most(most(distance, t - w.preferred.0), w.preferred.1 - t);
+        for (w, [low, high]) in self.wanted.iter().zip(day.temperature_c).take(statistics) {
+            distance = most(most(distance, low - w.preferred.0), w.preferred.1 - high);
         }
         distance
     }
 
-    /// The key by which mixes are ordered, a whole number: the smaller the better. Unknown oxygen comes after oxygen
-    /// known to keep the floor and before any that does not.
+    /// The key by which mixes are ordered, a whole number: the smaller the better; of a number of mixes, none has a
+    /// smaller one. Unknown oxygen comes after oxygen known to keep the floor and before any that does not.
     #[inline]
     pub(super) fn key(&self, day: &Day, statistics: usize, distance_c: f64) -> f64 {
         let (mut range, mut short) = (0.0, 0.0);
-        for (i, (w, t)) in self.wanted.iter().zip(day.temperature_c).take(statistics).enumerate() {
-            range = most(most(range, w.low - t), t - w.high);
+        for (i, (w, [low, high])) in self.wanted.iter().zip(day.temperature_c).take(statistics).enumerate() {
+            range = most(most(range, w.low - high), low - w.high);
             short = most(short, w.floor - day.oxygen_mg_l[usize::from(i > 0)]);
         }
         // a miss of part of a bin is a whole one
         let missed = if short > ROUND_OFF { 2.0 } else { 0.0 };
-        let known = missed + up_to(whole(short * self.per_mg_l - ROUND_OFF), STEPS - 3.0);
-        let unknown = if self.has_floor { 1.0 } else { 0.0 };
-        let oxygen = if day.oxygen_known { known } else { unknown };
+        let oxygen = missed + up_to(whole(short * self.per_mg_l - ROUND_OFF), STEPS - 3.0);
         let missed = if range > ROUND_OFF { 1.0 } else { 0.0 };
         let outside = missed + up_to(whole(range * self.per_c - ROUND_OFF), STEPS - 2.0);
         let far = up_to(whole(distance_c * self.per_c + ROUND_OFF), STEPS - 1.0);
@@ -189,6 +184,13 @@ impl Goal {
         (oxygen * w_oxygen + outside * w_range)
             + (far * w_far + cold * w_cold)
             + (cost * MOVE_STEPS + hours) * w_moves
+    }
+
+    /// The key of a day whose oxygen is unknown.
+    pub(super) fn key_unknown(&self, day: &Day, statistics: usize, distance_c: f64) -> f64 {
+        let told = Day { oxygen_mg_l: [f64::INFINITY; 2], ..*day };
+        let unknown = if self.has_floor { self.weights[0] } else { 0.0 };
+        self.key(&told, statistics, distance_c) + unknown
     }
 }
 

@@ -2,13 +2,16 @@
 //!
 //! Methods: `docs/methods.md`, section 10.
 
+mod arrange;
 mod choices;
 mod curve;
+mod found;
 mod goal;
 mod offers;
 mod ranking;
 mod search;
 mod seats;
+mod tail;
 mod units;
 
 use chrono::NaiveDate;
@@ -20,11 +23,13 @@ use crate::profile::Profile;
 use crate::site::Site;
 use crate::withdrawal::{Opening, Sink, zone};
 
+use arrange::ways;
 use choices::{Lanes, Levels, MOST_BLOCKS, Slot};
+use found::Found;
 use goal::Goal;
 use offers::{Kitchen, Offers};
 use ranking::Decoder;
-use search::{Found, Task, WholeRule, ways};
+use search::{Task, WholeRule};
 use seats::Level;
 
 pub use curve::{Curve, Curves, Water};
@@ -187,8 +192,8 @@ fn assembled(
         rejected,
         examined: offers.examined,
         judged: found.judged,
-        skipped: offers.examined - to_judge + found.skipped,
-        allowed: found.allowed,
+        skipped: offers.examined - to_judge + found.undrawn + found.beaten,
+        allowed: to_judge - found.undrawn - found.refused,
         attainable_c: both(found.coldest, found.warmest),
         attainable_oxygen_mg_l: both(found.least_oxygen, found.most_oxygen),
         trade,

@@ -18,7 +18,7 @@ use super::Question;
 use super::choices::{Choice, Choices, Levels, MOST_BLOCKS, Part};
 use super::curve::Curves;
 use super::seats::{Level, Member};
-use super::search::ways;
+use super::arrange::ways;
 use super::units::{State, Unit};
 
 /// The smallest miss of one limit, and how many mixes miss it.
