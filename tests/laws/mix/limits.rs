@@ -19,6 +19,7 @@ fn kept() -> Case {
         max_open: Some(2.0),
         max_head_loss_m: Some(3.0),
         max_flow_m3s: Some(20.0),
+        ..RawWell::default()
     }];
     let limited = |name: &str, centre_m: f64, well: Option<&str>| RawOutlet {
         well: well.map(str::to_owned),
