@@ -7,6 +7,7 @@ pub mod mix;
 pub mod plot;
 pub mod problem;
 pub mod profile;
+pub mod rank;
 pub mod report;
 pub mod site;
 pub mod target;

@@ -2,16 +2,27 @@
 //!
 //! Methods: `docs/methods.md`, section 9.
 
+use std::borrow::Cow;
+
 use rand_distr::{Distribution, StandardNormal, Uniform};
 use rand_pcg::Pcg64Mcg;
 use rand_pcg::rand_core::SeedableRng;
 
+use crate::intake::ASSUMED_LOSS;
 use crate::profile::{Column, OxygenSample, Profile, Sample, greatest_buoyancy, mixed_base_m};
 use crate::site::{BandInputs, Site};
 use crate::withdrawal::CrestForm;
 
 use super::blend::{Blend, draw_levels, overlapping, release, release_joined};
 use super::levels::{Setting, levels};
+
+/// Least and greatest loss where one is assumed (choice, methods section 4).
+pub const LEAST_LOSS: f64 = 0.5;
+/// See [`LEAST_LOSS`].
+pub const GREATEST_LOSS: f64 = 3.0;
+/// Steps of this, their whole part dropped, spread evenly over 0 to 1 (derived; the golden section). Drawn so, the
+/// losses leave every other draw as it was.
+const GOLDEN: f64 = 0.618_033_988_749_894_9;
 
 /// One member: one draw of each source of doubt, the same for every mix.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -30,6 +41,8 @@ pub struct Member {
     pub leak: f64,
     /// Share taken from overlapping levels computed as one sink, 0 to 1.
     pub joined: f64,
+    /// Place of an assumed loss between its least and greatest, 0 to 1, even in its logarithm.
+    pub loss: f64,
     /// Relation the crests use.
     pub crest: CrestForm,
     /// What the method misses, C.
@@ -70,6 +83,7 @@ pub fn members(inputs: &BandInputs) -> Vec<Member> {
                 zone_factor,
                 leak,
                 joined,
+                loss: (GOLDEN * i as f64).fract(),
                 crest,
                 release_c,
                 release_mg_l,
@@ -139,6 +153,7 @@ impl Perturbed {
             .cases
             .iter()
             .filter_map(|(m, column)| {
+                let setting = &at_loss(setting, m.loss);
                 let mut levels = levels(site, groups, setting, column.surface_m(), m.leak, m.crest);
                 for level in &mut levels {
                     level.sink.flow_m3s *= m.flow;
@@ -165,6 +180,27 @@ impl Perturbed {
             .collect();
         Spread { cases }
     }
+}
+
+/// Flows of a setting whose loss is assumed at a place between the least and the greatest, straight between those
+/// and the middle one (choice).
+fn at_loss(setting: &Setting, place: f64) -> Cow<'_, Setting> {
+    let [low, high] = setting.at_losses.as_slice() else { return Cow::Borrowed(setting) };
+    let middle = (ASSUMED_LOSS / LEAST_LOSS).ln() / (GREATEST_LOSS / LEAST_LOSS).ln();
+    let (other, share) = if place < middle {
+        (low, 1.0 - place / middle)
+    } else {
+        (high, (place - middle) / (1.0 - middle))
+    };
+    let mut out = setting.clone();
+    for (gates, others) in [(&mut out.gates, &other.gates), (&mut out.leaks, &other.leaks)] {
+        for gate in gates {
+            if let Some(there) = others.iter().find(|g| g.outlet == gate.outlet) {
+                gate.flow_m3s += share * (there.flow_m3s - gate.flow_m3s);
+            }
+        }
+    }
+    Cow::Owned(out)
 }
 
 /// Elevation whose water heaves most: where density changes fastest, else the base of the mixed layer, m.

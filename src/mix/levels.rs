@@ -25,11 +25,22 @@ pub struct Gate {
     pub flow_m3s: f64,
 }
 
-/// What is open, and how much passes. Flows of gates that share a well are given, not split.
+/// What is open, and how much passes.
 #[derive(Debug, Clone, Default, PartialEq)]
 pub struct Setting {
-    /// Gates in any order; the order changes nothing.
+    /// Open gates in any order; the order changes nothing.
     pub gates: Vec<Gate>,
+    /// What shut gates of wells leak, at opening 0, where a split has told it.
+    pub leaks: Vec<Gate>,
+    /// The same setting with an assumed loss at its least and at its greatest; empty where no loss is assumed.
+    pub at_losses: Vec<Setting>,
+}
+
+impl Setting {
+    /// Gates with given flows, nothing told of leaks.
+    pub fn of(gates: Vec<Gate>) -> Self {
+        Self { gates, ..Self::default() }
+    }
 }
 
 /// A level under a setting.
@@ -104,44 +115,63 @@ pub fn levels(
     groups
         .iter()
         .filter_map(|group| {
-            let mut first_m = None; // so that equal centre-lines have that one as their mean, to the last digit
-            let mut sums = [0.0_f64; 3]; // area, area x elevation above the first, flow
-            let mut lengths_m = [0.0_f64; 2]; // of open and of leaking crests
-            let mut outlets = Vec::new();
-            let mut height_m = 0.0_f64;
-            for &index in group {
-                let Some(&(opening, flow)) = flows[index].as_ref() else { continue };
-                let outlet = &site.outlets[index];
-                let leaking = opening <= 0.0;
-                let part = outlet.open_part(if leaking { 1.0 } else { opening });
-                let area = if leaking { intake::leak_area_m2(outlet, leak_place) } else { part.area_m2 };
-                sums[0] += area;
-                sums[1] += area * (part.centre_m - *first_m.get_or_insert(part.centre_m));
-                sums[2] += flow;
-                if let Kind::Crest { length_m, .. } = outlet.kind {
-                    lengths_m[usize::from(leaking)] += length_m;
-                }
-                height_m = height_m.max(part.height_m);
-                outlets.push(index);
-            }
-            let first = *outlets.first()?;
-            let opening = if site.outlets[first].is_crest() {
-                // a leak beside an open crest does not make that crest longer
-                let [open, leaking] = lengths_m;
-                Opening::Crest { length_m: if open > 0.0 { open } else { leaking }, form }
-            } else {
-                Opening::Port { angle_rad: site.outlets[first].angle_rad }
-            };
-            let sink = Sink { centre_m: first_m? + sums[1] / sums[0], flow_m3s: sums[2], opening };
-            Some(Level { outlets, sink, height_m })
+            let members: Vec<(usize, f64)> =
+                group.iter().filter_map(|&i| Some((i, flows[i].as_ref()?.0))).collect();
+            let seat = seat(site, &members, leak_place, form)?;
+            let flow_m3s = members.iter().filter_map(|&(i, _)| Some(flows[i]?.1)).sum();
+            let sink = Sink { centre_m: seat.centre_m, flow_m3s, opening: seat.opening };
+            let outlets = members.into_iter().map(|m| m.0).collect();
+            Some(Level { outlets, sink, height_m: seat.height_m })
         })
         .collect()
 }
 
+/// Where a level draws, whatever its flow.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Seat {
+    /// Area-weighted mean of its open parts, m.
+    pub centre_m: f64,
+    /// Kind and angle.
+    pub opening: Opening,
+    /// Tallest opening, m.
+    pub height_m: f64,
+}
+
+/// Where linked outlets draw as one, each with its opening, 0 for one that leaks; in the order of their group.
+/// `None` without outlets.
+pub fn seat(site: &Site, members: &[(usize, f64)], leak_place: f64, form: CrestForm) -> Option<Seat> {
+    let mut first_m = None; // so that equal centre-lines have that one as their mean, to the last digit
+    let mut sums = [0.0_f64; 2]; // area, area x elevation above the first
+    let mut lengths_m = [0.0_f64; 2]; // of open and of leaking crests
+    let mut height_m = 0.0_f64;
+    for &(index, opening) in members {
+        let outlet = &site.outlets[index];
+        let leaking = opening <= 0.0;
+        let part = outlet.open_part(if leaking { 1.0 } else { opening });
+        let area = if leaking { intake::leak_area_m2(outlet, leak_place) } else { part.area_m2 };
+        sums[0] += area;
+        sums[1] += area * (part.centre_m - *first_m.get_or_insert(part.centre_m));
+        if let Kind::Crest { length_m, .. } = outlet.kind {
+            lengths_m[usize::from(leaking)] += length_m;
+        }
+        height_m = height_m.max(part.height_m);
+    }
+    let first = members.first()?.0;
+    let opening = if site.outlets[first].is_crest() {
+        // a leak beside an open crest does not make that crest longer
+        let [open, leaking] = lengths_m;
+        Opening::Crest { length_m: if open > 0.0 { open } else { leaking }, form }
+    } else {
+        Opening::Port { angle_rad: site.outlets[first].angle_rad }
+    };
+    Some(Seat { centre_m: first_m? + sums[1] / sums[0], opening, height_m })
+}
+
 /// Opening and flow of every outlet that gives or could give water: set or leaking.
 ///
-/// All ports of a well share its total in proportion to what they would pass at the head of the set flows; for one
-/// open gate that is the exact split by area and loss. Sums run in the order of the groups, never of the file.
+/// Leaks that a split has told follow their place in their range, the well's total kept. Where none is told, all
+/// ports of a well share its total in proportion to what they would pass at the head of the set flows; for one open
+/// gate that is the split by area and loss. Sums run in the order of the groups, never of the file.
 fn with_leaks(
     site: &Site,
     groups: &[Vec<usize>],
@@ -164,11 +194,26 @@ fn with_leaks(
             let loss = outlet.loss.unwrap_or(intake::ASSUMED_LOSS);
             let head = loss * (flow / area).powi(2) / (2.0 * G_M_S2);
             wells[well].head_m = wells[well].head_m.max(head);
-            wells[well].set_m3s += flow;
+            wells[well].total_m3s += flow;
+            wells[well].drawn_m3s += flow;
         }
     }
+    for gate in &setting.leaks {
+        let Some((outlet, well)) = site.outlets.get(gate.outlet).and_then(|o| Some((o, o.well?))) else {
+            continue;
+        };
+        let grown = intake::leak_area_m2(outlet, leak_place) / intake::leak_area_m2(outlet, 0.5);
+        flows[gate.outlet] = Some((0.0, gate.flow_m3s * grown));
+        wells[well].told = true;
+    }
     for &(i, outlet) in &order {
-        if flows[i].is_some() || outlet.centre_m >= pool_m {
+        let leaks = flows[i].is_some_and(|(opening, _)| opening <= 0.0);
+        if let (true, Some(well), Some((_, flow))) = (leaks, outlet.well, flows[i]) {
+            let told = setting.leaks.iter().find(|g| g.outlet == i).map_or(0.0, |g| g.flow_m3s);
+            wells[well].total_m3s += told;
+            wells[well].drawn_m3s += flow;
+        }
+        if flows[i].is_some() || outlet.centre_m >= pool_m || outlet.well.is_some_and(|w| wells[w].told) {
             continue;
         }
         let head = outlet.well.map_or(pool_m - outlet.centre_m, |w| wells[w].head_m);
@@ -176,26 +221,27 @@ fn with_leaks(
         if leak > 0.0 {
             flows[i] = Some((0.0, leak));
             if let Some(well) = outlet.well {
-                wells[well].leaks_m3s += leak;
+                wells[well].drawn_m3s += leak;
             }
         }
     }
     for &(i, outlet) in &order {
         if let (Some(well), Some(slot)) = (outlet.well.map(|w| wells[w]), flows[i].as_mut())
-            && well.leaks_m3s > 0.0
+            && (well.drawn_m3s - well.total_m3s).abs() > 0.0
         {
-            slot.1 *= well.set_m3s / (well.set_m3s + well.leaks_m3s);
+            slot.1 *= well.total_m3s / well.drawn_m3s;
         }
     }
     flows
 }
 
-/// What a well carries: the flows set at its gates, the leaks at the head those need.
+/// What a well carries, and what its ports would draw at the head the set flows need.
 #[derive(Clone, Copy, Default)]
 struct Drained {
     head_m: f64,
-    set_m3s: f64,
-    leaks_m3s: f64,
+    total_m3s: f64,
+    drawn_m3s: f64,
+    told: bool,
 }
 
 /// Several levels as one sink at their flow-weighted elevation; a crest among them draws as a port in a face.

@@ -5,8 +5,10 @@ mod beware;
 mod blend;
 mod judge;
 mod levels;
+mod wells;
 
-pub use band::{Member, Perturbed, Spread, members};
+pub use band::{GREATEST_LOSS, LEAST_LOSS, Member, Perturbed, Spread, members};
 pub use blend::{Blend, Drawn, blend, draw_levels, overlapping, release, release_joined};
 pub use judge::{Mix, TargetStanding, judge, refusals};
-pub use levels::{Gate, Level, Setting, as_one, groups, levels};
+pub use levels::{Gate, Level, Seat, Setting, as_one, groups, levels, seat};
+pub use wells::{Asked, WellState, port, resolve};

@@ -6,6 +6,7 @@ mod finder;
 mod layering;
 mod levelled;
 mod moved;
+mod pressure;
 mod quality;
 mod raw;
 mod rows;
@@ -20,6 +21,7 @@ pub use layering::{
     thermocline,
 };
 pub use levelled::levelled;
+pub(crate) use pressure::HEAD_KG_M3;
 pub use raw::{Raw, RawRow};
 pub use rows::{ABOVE_SURFACE_M, WATER_C};
 pub use samples::{OXYGEN_CARRY_M, OxygenSample, Sample};

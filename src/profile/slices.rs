@@ -7,7 +7,7 @@ use super::stretch::Stretch;
 /// zones, of three or four slices, are then blended to about 0.001 C; a hundredth left 0.003 C).
 const THICKEST: f64 = 1.0 / 180.0;
 /// Abscissa of the two-point Gauss rule on -1..1 (1/sqrt 3; exact for cubics).
-const GAUSS_TWO: f64 = 0.577_350_269_189_625_8;
+pub(super) const GAUSS_TWO: f64 = 0.577_350_269_189_625_8;
 
 /// Two Gauss points in each slice, as columns of numbers so that sums over a zone run through memory, two
 /// lanes at a time.
@@ -25,6 +25,8 @@ pub struct Slices {
     pub density_kg_m3: Vec<[f64; 2]>,
     /// Thickness the point stands for times width.
     pub weight: Vec<[f64; 2]>,
+    /// Mass of the water from the bed to each edge above that of as much water of the bed's density, kg/m2.
+    pub excess_kg_m2: Vec<f64>,
     /// Temperature, C.
     pub temperature_c: Vec<[f64; 2]>,
     /// Oxygen, mg/L; 0 where no reading reaches, so that sums hold only what was measured.
@@ -64,6 +66,7 @@ impl Slices {
             }
         }
         out.finder = Finder::new(&out.edges_m);
+        out.excess_kg_m2 = excess_kg_m2(&out.edges_m, &out.density_kg_m3, stretches);
         let none = |values: &[[f64; 2]]| values.iter().flatten().all(|&value| value == 0.0);
         let never = |flags: &[bool]| !flags.contains(&true);
         out.plain = none(&out.salt_g_per_kg)
@@ -91,4 +94,15 @@ impl Slices {
     pub fn holding(&self, z: f64) -> usize {
         self.finder.find(&self.edges_m, z)
     }
+}
+
+/// Sums of the slices' excess mass over water of the bed's density, from the bed to each edge, kg/m2.
+fn excess_kg_m2(edges_m: &[f64], density_kg_m3: &[[f64; 2]], stretches: &[Stretch]) -> Vec<f64> {
+    let bed_kg_m3 = stretches.first().map_or(0.0, |s| s.density_kg_m3(s.z_m[0]));
+    let mut sum = 0.0;
+    let slices = edges_m.windows(2).zip(density_kg_m3).map(|(ends, [a, b])| {
+        sum += 0.5 * (ends[1] - ends[0]) * ((a - bed_kg_m3) + (b - bed_kg_m3));
+        sum
+    });
+    std::iter::once(0.0).chain(slices).collect()
 }

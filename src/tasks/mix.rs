@@ -120,7 +120,7 @@ pub fn now_setting(site: &Site) -> Option<Setting> {
         })
         .collect::<Option<_>>()?;
     let gates: Vec<Gate> = gates.into_iter().filter(|g| g.flow_m3s > 0.0).collect();
-    (!gates.is_empty()).then_some(Setting { gates })
+    (!gates.is_empty()).then_some(Setting::of(gates))
 }
 
 /// A crest without gates spills whenever the pool stands above it, set or not.
@@ -168,5 +168,5 @@ fn parse_setting(site: &Site, sets: &[String], pool_m: f64) -> Result<Setting, F
         }
         gates.push(Gate { outlet, opening: 1.0, flow_m3s });
     }
-    Ok(Setting { gates })
+    Ok(Setting::of(gates))
 }

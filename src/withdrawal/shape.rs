@@ -150,6 +150,39 @@ impl Zone {
         out
     }
 
+    /// Share of the zone's flow from water colder than a temperature (C), 0 to 1.
+    pub fn colder_share(&self, column: &Column, threshold_c: f64) -> f64 {
+        let edges = &column.slices().edges_m;
+        let (mut cold, mut all) = (0.0, 0.0);
+        for (from, to, shape) in self.sides(column) {
+            for slice in from.slice..=to.slice {
+                let (low, high) = (edges[slice].max(from.z), edges[slice + 1].min(to.z));
+                if high <= low {
+                    continue;
+                }
+                let flow = |ends: [f64; 2]| {
+                    let mut sums = Sums::default();
+                    if ends[1] > ends[0] {
+                        shape.part(column, slice, ends, &mut sums);
+                    }
+                    sums.flow
+                };
+                all += flow([low, high]);
+                // temperature is linear in the slice, so what is colder ends where it crosses the threshold
+                let stretch = column.stretch(column.slices().stretch[slice]);
+                let [below, above] = stretch.temperature_c;
+                let crossing = stretch.z_m[0] + (threshold_c - below) / (above - below) * (stretch.z_m[1] - stretch.z_m[0]);
+                cold += match (below < threshold_c, above < threshold_c) {
+                    (true, true) => flow([low, high]),
+                    (false, false) => 0.0,
+                    (true, false) => flow([low, high.min(crossing)]),
+                    (false, true) => flow([low.max(crossing), high]),
+                };
+            }
+        }
+        if all > 0.0 { cold / all } else { 0.0 }
+    }
+
     /// The flow-weighted water of the zone. `None` for a zone without thickness.
     pub fn draw(&self, column: &Column) -> Option<Draw> {
         let mut sums = Sums::default();

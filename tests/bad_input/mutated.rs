@@ -164,7 +164,7 @@ fn judged(site: &Site, profile: &Profile, share: f64) -> Result<(), TestCaseErro
             Gate { outlet, opening: 1.0, flow_m3s: most * share }
         })
         .collect();
-    let setting = Setting { gates };
+    let setting = Setting::of(gates);
     said_well(&refusals(site, &setting, profile.pool_m))?;
     let perturbed = Perturbed::new(site, profile, Some(3.0));
     let summer = NaiveDate::from_ymd_opt(2026, 7, 20).unwrap();

@@ -134,7 +134,7 @@ fn pair(site: &Site, row: &PairRow, casts: &[CastRow], place: Place, conductance
     let age_days = (released - row.profile_date).num_days().unsigned_abs();
     let perturbed = Perturbed::new(site, &profile, Some(f64::from(u32::try_from(age_days).unwrap())));
     let flow_m3s = Unit::CubicFootPerSecond.to_si(row.power_cfs);
-    let setting = Setting { gates: vec![Gate { outlet: 0, opening: 1.0, flow_m3s }] };
+    let setting = Setting::of(vec![Gate { outlet: 0, opening: 1.0, flow_m3s }]);
     let mix = judge(site, &profile, &perturbed, &setting, released).unwrap();
     Pair {
         trip: row.trip_id.clone(),

@@ -10,6 +10,7 @@ mod table;
 mod targets;
 mod units;
 mod water;
+mod wells;
 mod withdrawal;
 
 /// How the property tests beside the published values run; cases that fail are kept with those of the laws.

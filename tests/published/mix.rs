@@ -214,7 +214,7 @@ fn published_outlets_within_half_the_smaller_height_are_one_level() {
 
 /// Elevation and flow of each level.
 fn sinks(site: &Site, gates: &[Gate]) -> Vec<(f64, f64)> {
-    let setting = Setting { gates: gates.to_vec() };
+    let setting = Setting::of(gates.to_vec());
     levels(site, &groups(site), &setting, 60.0, 0.5, CrestForm::Overflow)
         .iter()
         .map(|l| (l.sink.centre_m, l.sink.flow_m3s))

@@ -184,7 +184,7 @@ fn judged(targets: Vec<RawTarget>, on: &str) -> (Mix, Site) {
     let rows = vec![sample(1, 40.0), sample(2, 0.0)];
     let cast = Raw { pool_m: Some(40.0), rows, ..Raw::default() };
     let profile = Profile::build(&cast, &site, None).0.unwrap();
-    let setting = Setting { gates: vec![Gate { outlet: 0, opening: 1.0, flow_m3s: 20.0 }] };
+    let setting = Setting::of(vec![Gate { outlet: 0, opening: 1.0, flow_m3s: 20.0 }]);
     let mix =
         judge(&site, &profile, &Perturbed::new(&site, &profile, Some(0.0)), &setting, date(on)).unwrap();
     (mix, site)

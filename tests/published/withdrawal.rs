@@ -19,7 +19,7 @@ const WORKED: [(f64, f64, f64); 8] = [
     (60.0, 24.0, 8.4),
 ];
 
-fn worked() -> Column {
+pub(crate) fn worked() -> Column {
     let samples: Vec<Sample> = WORKED
         .iter()
         .map(|&(elevation_m, temperature_c, _)| Sample {
@@ -67,7 +67,7 @@ fn linear(depth_m: f64, fall: f64, centre_m: f64, nodes: u32, tracer: &dyn Fn(f6
     Column::given(&source, &density).unwrap()
 }
 
-fn port(centre_m: f64, flow_m3s: f64, angle_rad: f64) -> Sink {
+pub(crate) fn port(centre_m: f64, flow_m3s: f64, angle_rad: f64) -> Sink {
     Sink { centre_m, flow_m3s, opening: Opening::Port { angle_rad } }
 }
 

@@ -147,7 +147,7 @@ fn capacities() -> Raw {
 }
 
 fn refused(site: &Site, gate: Gate, pool_m: f64) -> Vec<(&'static str, String)> {
-    let problems = refusals(site, &Setting { gates: vec![gate] }, pool_m);
+    let problems = refusals(site, &Setting::of(vec![gate]), pool_m);
     problems.into_iter().map(|p| (p.kind, p.words)).collect()
 }
 

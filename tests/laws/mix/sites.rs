@@ -42,7 +42,7 @@ impl Case {
     pub(super) fn ready(&self) -> Option<Ready> {
         let site = checked(&self.raw);
         let profile = Profile::build(&cast(&self.water), &site, None).0?;
-        Some(Ready { site, profile, setting: Setting { gates: self.gates.clone() } })
+        Some(Ready { site, profile, setting: Setting::of(self.gates.clone()) })
     }
 
     /// Index of each outlet that no gate of the setting opens.

@@ -1,6 +1,15 @@
-//! From gates to flows: capacity, submergence and leakage of each opening under a pool.
+//! From gates to flows: capacity, submergence and leakage of each opening under a pool, and how a well's flow
+//! divides among its ports.
 //!
 //! Methods: `docs/methods.md`, section 4.
+
+mod branch;
+mod root;
+mod split;
+mod velocity;
+
+pub use split::{Entering, Port, Shaft, Split};
+pub use velocity::{entrance_velocity_m_s, gordon_submergence_m, shaft_velocity_head_m, velocity_head_m};
 
 use crate::site::{Kind, Leakage, Outlet, Site};
 use crate::water::G_M_S2;

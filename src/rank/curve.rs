@@ -1,0 +1,215 @@
+//! What one level gives as a function of its flow: solved once on a few flows, read many times between them.
+//!
+//! Methods: `docs/methods.md`, section 10.
+
+use std::collections::BTreeMap;
+
+use crate::profile::Column;
+use crate::water;
+use crate::withdrawal::{Opening, Sink, zone};
+
+/// The table is cut finer until half-way between two of its flows it errs by less than this, C and mg/L (choice).
+const APART: f64 = 5e-4;
+/// The same for the share of cold water (choice).
+const APART_SHARE: f64 = 5e-3;
+/// The same for dissolved and suspended solids, as a share of the value (choice).
+const APART_SOLIDS: f64 = 1e-3;
+/// Steps of the first cut, even in the root of the flow (choice).
+const FIRST: u32 = 16;
+/// A step is halved this often at most (choice): where the oxygen becomes unknown the table jumps.
+const HALVINGS: u32 = 10;
+/// Least flow of the table as a share of its greatest (choice); below it the water is that of this flow.
+const LEAST: f64 = 1e-7;
+
+/// Water of a level at one flow.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Water {
+    /// Temperature, C.
+    pub temperature_c: f64,
+    /// Oxygen, mg/L; `None` where it is not known.
+    pub oxygen_mg_l: Option<f64>,
+    /// Share of the flow from water colder than the threshold, 0 to 1.
+    pub cold_share: f64,
+    /// Dissolved solids, g/kg.
+    pub salt_g_per_kg: f64,
+    /// Suspended solids, mg/L.
+    pub suspended_mg_l: f64,
+}
+
+impl Water {
+    /// Dissolved and suspended solids, mg/L.
+    pub fn solids_mg_l(&self) -> f64 {
+        self.salt_g_per_kg * water::pure_water_kg_m3(self.temperature_c) + self.suspended_mg_l
+    }
+}
+
+/// One knot: the root of the flow, and temperature, oxygen, cold share, dissolved and suspended solids there.
+#[derive(Debug, Clone, Copy)]
+struct Knot {
+    root: f64,
+    values: [f64; 5],
+    oxygen_known: bool,
+}
+
+/// The release of one level as a function of its flow, linear in the root of the flow between knots.
+#[derive(Debug, Clone)]
+pub struct Curve {
+    knots: Vec<Knot>,
+    /// First knot of each of a number of even steps of the root, so that a reading starts near its place.
+    starts: Vec<u32>,
+    steps_per_root: f64,
+}
+
+impl Curve {
+    /// Solves a level at the flows it needs, up to `most_m3s`. `cold_c` is the threshold of cold water. `None` for a level out of the water.
+    ///
+    /// Flows at which the zone meets bed or surface are knots, since the release bends there.
+    pub fn new(
+        column: &Column,
+        centre_m: f64,
+        opening: Opening,
+        most_m3s: f64,
+        cold_c: Option<f64>,
+    ) -> Option<Self> {
+        let solve = |root: f64| {
+            let sink = Sink { centre_m, flow_m3s: root * root, opening };
+            let zone = zone(column, &sink, 1.0)?;
+            let draw = zone.draw(column)?;
+            let values = [
+                draw.temperature_c,
+                draw.oxygen_mg_l.unwrap_or(0.0),
+                cold_c.map_or(0.0, |c| zone.colder_share(column, c)),
+                draw.salt_g_per_kg,
+                draw.suspended_mg_l,
+            ];
+            Some((Knot { root, values, oxygen_known: draw.oxygen_mg_l.is_some() }, zone))
+        };
+        let top = most_m3s.sqrt();
+        let mut roots: Vec<f64> = (1..=FIRST).map(|i| top * f64::from(i) / f64::from(FIRST)).collect();
+        roots.push(top * LEAST.sqrt());
+        let (last, widest) = solve(top)?;
+        let meets = [widest.lower, widest.upper].into_iter().filter_map(|side| side.boundary_flow_m3s);
+        roots.extend(meets.map(f64::sqrt).filter(|&r| r > top * LEAST.sqrt() && r < top));
+        roots.sort_by(f64::total_cmp);
+        roots.dedup();
+        let mut knots: Vec<Knot> = Vec::new();
+        for root in roots {
+            let knot = if root.total_cmp(&top).is_eq() { last } else { solve(root)?.0 };
+            if let Some(&before) = knots.last() {
+                refine(&|r| solve(r).map(|s| s.0), before, knot, HALVINGS, &mut knots);
+            }
+            knots.push(knot);
+        }
+        let count = 2 * knots.len();
+        let steps_per_root = count as f64 / top;
+        let mut at = 0;
+        let starts = (0..=count)
+            .map(|step| {
+                while at + 2 < knots.len() && knots[at + 1].root * steps_per_root <= step as f64 {
+                    at += 1;
+                }
+                at as u32
+            })
+            .collect();
+        Some(Self { knots, starts, steps_per_root })
+    }
+
+    /// Water at a flow, m3/s, held beyond both ends of the table.
+    #[inline]
+    pub fn at(&self, flow_m3s: f64) -> Water {
+        let (low, high, share) = self.place(flow_m3s);
+        let [temperature_c, oxygen, cold_share, salt_g_per_kg, suspended_mg_l] =
+            [0, 1, 2, 3, 4].map(|i| low.values[i] + share * (high.values[i] - low.values[i]));
+        let known = low.oxygen_known && high.oxygen_known;
+        Water {
+            temperature_c,
+            oxygen_mg_l: known.then_some(oxygen),
+            cold_share,
+            salt_g_per_kg,
+            suspended_mg_l,
+        }
+    }
+
+    /// The two knots about a flow and the share of the way between them.
+    #[inline]
+    fn place(&self, flow_m3s: f64) -> (&Knot, &Knot, f64) {
+        let root = flow_m3s.max(0.0).sqrt();
+        let step = ((root * self.steps_per_root) as usize).min(self.starts.len() - 1);
+        let mut at = self.starts[step] as usize;
+        while at + 2 < self.knots.len() && self.knots[at + 1].root <= root {
+            at += 1;
+        }
+        let (low, high) = (&self.knots[at], &self.knots[at + 1]);
+        (low, high, ((root - low.root) / (high.root - low.root)).clamp(0.0, 1.0))
+    }
+
+    /// Number of flows solved.
+    pub fn knots(&self) -> usize {
+        self.knots.len()
+    }
+}
+
+/// Adds knots between two until a straight line between neighbours is near enough.
+fn refine(solve: &impl Fn(f64) -> Option<Knot>, a: Knot, b: Knot, halvings: u32, knots: &mut Vec<Knot>) {
+    let middle = 0.5 * (a.root + b.root);
+    let (true, Some(knot)) = (halvings > 0, solve(middle)) else { return };
+    let off = |i: usize| (knot.values[i] - 0.5 * (a.values[i] + b.values[i])).abs();
+    let known = [a, knot, b].map(|k| k.oxygen_known);
+    let near = off(0) < APART
+        && off(2) < APART_SHARE
+        && off(3) < APART_SOLIDS * (0.1 + knot.values[3])
+        && off(4) < APART_SOLIDS * (1.0 + knot.values[4])
+        && known.iter().all(|&k| k == known[0])
+        && (!known[0] || off(1) < APART);
+    if near {
+        return;
+    }
+    refine(solve, a, knot, halvings - 1, knots);
+    knots.push(knot);
+    refine(solve, knot, b, halvings - 1, knots);
+}
+
+/// Curves of a pool, each sink solved once however many gates share it.
+#[derive(Debug, Default)]
+pub struct Curves {
+    places: BTreeMap<[u64; 3], usize>,
+    curves: Vec<Option<Curve>>,
+    sinks: Vec<(f64, Opening)>,
+}
+
+impl Curves {
+    /// Asks for the curve of a sink; its index among the curves.
+    pub fn ask(&mut self, centre_m: f64, opening: Opening) -> usize {
+        let (kind, size) = match opening {
+            Opening::Port { angle_rad } => (0, angle_rad),
+            Opening::Crest { length_m, .. } => (1, length_m),
+        };
+        let next = self.sinks.len();
+        let index = *self.places.entry([kind, size.to_bits(), centre_m.to_bits()]).or_insert(next);
+        if index == next {
+            self.sinks.push((centre_m, opening));
+        }
+        index
+    }
+
+    /// Solves what was asked for, on all cores.
+    pub fn solve(&mut self, column: &Column, most_m3s: f64, cold_c: Option<f64>) {
+        use rayon::prelude::*;
+        self.curves = self
+            .sinks
+            .par_iter()
+            .map(|&(centre_m, opening)| Curve::new(column, centre_m, opening, most_m3s, cold_c))
+            .collect();
+    }
+
+    /// A solved curve; `None` for a sink out of the water.
+    #[inline]
+    pub fn get(&self, index: usize) -> Option<&Curve> {
+        self.curves.get(index)?.as_ref()
+    }
+
+    /// Where a curve draws.
+    pub fn sink(&self, index: usize) -> Option<(f64, Opening)> {
+        self.sinks.get(index).copied()
+    }
+}
