@@ -21,6 +21,13 @@ pub(super) const REFUSED: &[Case] = &[
     ("flow: [5, 12]", "flow: [-5, 12]", "avoid", "outlets[2].avoid[0].flow", "cannot be set"),
     ("velocity: 1.3", "velocity: 0", "not-positive", "outlets[0].max_entrance_velocity", "above zero"),
     ("velocity: 1.3", "velocity: 3 cfs", "quantity", "outlets[0].max_entrance_velocity", "unit of flow"),
+    (
+        "centre: 58",
+        "centre: 58, max_entrance_velocity: 1",
+        "shape",
+        "outlets[3].max_entrance_velocity",
+        "under water",
+    ),
     ("under_flow: false", "under_flow: 3", "wrong-type", "outlets[0].moves_under_flow", "true or false"),
     ("hours: 3,", "hours: -3,", "negative", "outlets[0].crew.hours", "cannot be negative"),
     ("lead_days: 7", "lead_days: -7", "negative", "outlets[0].crew.lead_days", "cannot be negative"),

@@ -36,6 +36,10 @@ pub(super) fn outlet(
 ) -> Vec<Avoid> {
     let at = |key: &str| format!("outlets[{i}].{key}");
     positive(o.max_entrance_m_s, at("max_entrance_velocity"), "max_entrance_velocity", problems);
+    if o.max_entrance_m_s.is_some() && o.kind.as_deref() == Some("crest") {
+        let words = "max_entrance_velocity belongs to an opening under water";
+        problems.push(Problem::refused("shape", words, "drop it").at(at("max_entrance_velocity")));
+    }
     for (value, key) in
         [(o.crew.hours, "crew.hours"), (o.crew.lead_days, "crew.lead_days"), (o.crew.cost, "crew.cost")]
     {
