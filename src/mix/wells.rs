@@ -93,8 +93,7 @@ fn at_loss(
         .map(|group| {
             let set = asked.direct.iter().filter(|g| group.contains(&g.outlet)).map(|g| g.flow_m3s);
             let leaks = group.iter().filter(|&&i| leaks_directly(site, asked, i, pool_m));
-            let leak =
-                |&i: &usize| intake::leak_m3s(&site.outlets[i], pool_m - site.outlets[i].centre_m, 0.5);
+            let leak = |&i: &usize| intake::leak_m3s(&site.outlets[i], pool_m - site.outlets[i].centre_m, 0.5);
             set.sum::<f64>() + leaks.map(leak).sum::<f64>()
         })
         .collect();
@@ -146,7 +145,10 @@ fn fillings(site: &Site, groups: &[Vec<usize>], asked: &Asked, pool_m: f64, loss
                 })
                 .collect();
             let assumed_loss = gates.iter().any(|g| site.outlets[g.outlet].loss.is_none());
-            Filling { state: WellState { well, flow_m3s, head_m: 0.0, settled: true, assumed_loss }, gates }
+            Filling {
+                state: WellState { well, flow_m3s, head_m: 0.0, settled: true, assumed_loss },
+                gates,
+            }
         })
         .collect()
 }
@@ -189,7 +191,8 @@ fn seats(
     groups
         .iter()
         .map(|group| {
-            let members: Vec<(usize, f64)> = group.iter().filter_map(|&i| Some((i, opening(i)?))).collect();
+            let members: Vec<(usize, f64)> =
+                group.iter().filter_map(|&i| Some((i, opening(i)?))).collect();
             seat(site, &members, 0.5, CrestForm::default())
         })
         .collect()
@@ -214,8 +217,11 @@ fn share_out(
     let ports: Vec<Port> = gates.iter().map(|g| g.port).collect();
     let supply = |k: usize, flow: f64| entering(column, seats[gates[k].group], besides[k] + flow);
     let state = wells[w].state;
-    let shaft =
-        Shaft { column, conduit_m: site.wells[state.well].conduit_m, solids_kg_m3: site.water.solids_kg_m3 };
+    let shaft = Shaft {
+        column,
+        conduit_m: site.wells[state.well].conduit_m,
+        solids_kg_m3: site.water.solids_kg_m3,
+    };
     let Some(split) = shaft.split(&ports, state.flow_m3s, supply) else {
         wells[w].state.flow_m3s = 0.0;
         return 0.0;

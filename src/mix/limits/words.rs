@@ -48,11 +48,10 @@ impl Check {
             }
             Rule::EntranceVelocity => (format!("{found} through its opening, {bound} allowed"), None),
             Rule::Undrawn => self.undrawn(site),
-            Rule::SolidsMax => (format!("{found}, {bound} allowed"), None),
             Rule::ShareMin => (format!("{found} of the release, {bound} required"), None),
             Rule::ShareMax => (format!("{found} of the release, {bound} allowed"), None),
             Rule::MaxMoves => (format!("{found} gates move, {bound} allowed"), None),
-            Rule::MaxCrewHours => (format!("{found}, {bound} allowed"), None),
+            Rule::SolidsMax | Rule::MaxCrewHours => (format!("{found}, {bound} allowed"), None),
         };
         let reason = reason.filter(|r| !r.is_empty()).map_or_else(String::new, |r| format!(" ({r})"));
         format!("{}{}: {words}{reason}", self.rule.name(), self.of_words(site))
@@ -71,7 +70,6 @@ impl Check {
             Rule::FlowMax | Rule::Capacity => "lower the flow, or share it with another outlet",
             Rule::MaxOpen => "open fewer of its gates",
             Rule::WellMaxFlow => "lower the flow of its gates",
-            Rule::MaxHeadLoss => "lower its flow, or open it further",
             Rule::ReleaseMin => "release more",
             Rule::ReleaseMax | Rule::Drawdown => "release less",
             Rule::FlowChangePerHour | Rule::FlowChangePerDay => "change the flow in smaller steps",
@@ -79,7 +77,7 @@ impl Check {
                 "change the temperature in smaller steps"
             }
             Rule::Reserved => "give it that flow",
-            Rule::EntranceVelocity => "lower its flow, or open it further",
+            Rule::MaxHeadLoss | Rule::EntranceVelocity => "lower its flow, or open it further",
             Rule::Undrawn => "lower the flow, or use another outlet",
             Rule::SolidsMax => "take clearer water",
             Rule::ShareMin => "give these outlets more",
