@@ -62,11 +62,13 @@ fn judged_now(
     let unshown = |why: String| {
         (None, Some(Problem::note("now-not-shown", format!("the setting now is not shown: {why}"))))
     };
-    if site.now.is_empty() {
+    if site.now.is_empty() && site.now_wells.is_empty() {
         return unshown("the site file gives none under `now`".into());
     }
     let Some(mut now) = now_setting(site) else {
-        return unshown("it is given in openings, and the flows they make are not computed".into());
+        return unshown(
+            "it is given in openings or a well's total, and the flows they make are not computed".into(),
+        );
     };
     spill(site, context.profile.pool_m, &mut now);
     if let Some(problem) = refusals(site, &now, context.profile.pool_m).first() {
@@ -105,6 +107,10 @@ fn same(a: &Setting, b: &Setting) -> bool {
 
 /// The setting now, where the site gives it in flows.
 pub fn now_setting(site: &Site) -> Option<Setting> {
+    // a well's total is no flow of any one gate
+    if !site.now_wells.is_empty() {
+        return None;
+    }
     let gates: Vec<Gate> = site
         .now
         .iter()
