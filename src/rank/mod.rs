@@ -16,7 +16,7 @@ mod units;
 
 use chrono::NaiveDate;
 
-use crate::mix::limits::{self, Check, Of, Rule};
+use crate::mix::limits::{self, Before, Check, Of, Rule, Whole};
 use crate::mix::{Setting, groups};
 use crate::problem::Problem;
 use crate::profile::Profile;
@@ -58,8 +58,8 @@ pub struct Question<'a> {
     pub blocks: &'a [(f64, f64)],
     /// What is set now, where it is known.
     pub now: Option<&'a Setting>,
-    /// Temperature released now, C.
-    pub now_c: Option<f64>,
+    /// What is released now, where changes from it are to be judged.
+    pub before: Before,
     /// Steps the release is cut into.
     pub steps: usize,
     /// Criteria, the first first.
@@ -145,17 +145,27 @@ pub fn rank(question: &Question, progress: Progress) -> Result<Ranking, Stopped>
         ideas,
         progress,
     };
-    let found = search::search(&task).ok_or(Stopped::Cancelled)?;
+    let hopeless = hopeless(question);
+    let found = if hopeless.is_empty() {
+        search::search(&task).ok_or(Stopped::Cancelled)?
+    } else {
+        Found { undrawn: to_judge, ..Found::nothing(ideas, rules.len()) }
+    };
     let decoder =
         Decoder { question, units: &units, offers: &offers, level_of: &level_of, flows_m3s };
-    Ok(assembled(&decoder, &found, &told, &offers, to_judge))
+    let mut ranking = assembled(&decoder, &found, &told, &offers, to_judge);
+    let all = |check| Rejected { check, count: ranking.examined, open: Vec::new() };
+    let hopeless: Vec<Rejected> = hopeless.into_iter().map(all).collect();
+    ranking.rejected.extend(hopeless);
+    ranking.rejected.sort_by_key(|r| (r.check.rule, r.check.of, r.check.item));
+    Ok(ranking)
 }
 
 /// What was found, as mixes with names.
 fn assembled(
     decoder: &Decoder,
     found: &Found,
-    told: &[(Rule, Of, f64, f64)],
+    told: &[Told],
     offers: &Offers,
     to_judge: u64,
 ) -> Ranking {
@@ -168,18 +178,16 @@ fn assembled(
         .iter()
         .map(|m| Rejected { check: m.check, count: m.count, open: m.open.clone() })
         .collect();
-    for (&(rule, of, bound, sign), missed) in told.iter().zip(&found.missed) {
+    for (told, missed) in told.iter().zip(&found.missed) {
         if missed.count > 0 {
-            let room = -missed.nearest.0;
             let mix = decoder.mix(missed.nearest.1);
             let open = mix.asked.first().map_or_else(Vec::new, |a| {
                 a.direct.iter().map(|g| (g.outlet, g.opening)).chain(a.open.iter().copied()).collect()
             });
-            let check = Check { rule, of, found: bound + sign * missed.nearest.0, bound, room };
-            rejected.push(Rejected { check, count: missed.count, open });
+            rejected.push(Rejected { check: told.check(missed.nearest.0), count: missed.count, open });
         }
     }
-    rejected.sort_by_key(|r| (r.check.rule, r.check.of));
+    rejected.sort_by_key(|r| (r.check.rule, r.check.of, r.check.item));
     let mut trade: Vec<Extreme> = Vec::new();
     for at in &found.trade {
         if at.1 != u64::MAX && trade.last().is_none_or(|last| at.0 > last.value) {
@@ -228,7 +236,7 @@ fn kept_m3s(question: &Question, layer: usize, (centre_m, opening): (f64, Openin
         zone(column, &Sink { centre_m, flow_m3s, opening }, 1.0).is_some_and(|zone| {
             let mut checks = Vec::new();
             limits::level(question.site, column, &zone, Of::Whole, &mut checks);
-            checks.get(layer).is_some_and(Check::broken)
+            checks.iter().any(|c| c.item == layer && c.broken())
         })
     };
     if !draws(most_m3s) {
@@ -246,47 +254,88 @@ fn kept_m3s(question: &Question, layer: usize, (centre_m, opening): (f64, Openin
     low
 }
 
-/// Rules of the whole mix that depend on which mix it is; beside each its rule, what it is of, its bound, and on
-/// which side of the bound a miss lies.
-fn whole_rules(question: &Question, shared: bool) -> (Vec<WholeRule>, Vec<(Rule, Of, f64, f64)>) {
+/// What a rule of the whole is called and how a miss of it is told.
+struct Told {
+    rule: Rule,
+    of: Of,
+    item: usize,
+    bound: f64,
+    /// 1 where too much is a miss, -1 where too little is.
+    side: f64,
+}
+
+impl Told {
+    fn whole(rule: Rule, bound: f64) -> Self {
+        Self { rule, of: Of::Whole, item: 0, bound, side: 1.0 }
+    }
+
+    fn check(&self, miss: f64) -> Check {
+        let Self { rule, of, item, bound, side } = *self;
+        Check { rule, of, item, found: bound + side * miss, bound, room: -miss }
+    }
+}
+
+/// Rules of the whole mix that depend on which mix it is, each with how it is told. `shared` where several units draw
+/// through one level.
+fn whole_rules(question: &Question, shared: bool) -> (Vec<WholeRule>, Vec<Told>) {
     let l = &question.site.limits;
-    let mut rules: Vec<(WholeRule, (Rule, Of, f64, f64))> = Vec::new();
+    let mut rules: Vec<(WholeRule, Told)> = Vec::new();
     if let Some(most) = l.solids_max_mg_l {
-        rules.push((WholeRule::Solids(most), (Rule::SolidsMax, Of::Whole, most, 1.0)));
+        rules.push((WholeRule::Solids(most), Told::whole(Rule::SolidsMax, most)));
     }
     for (i, share) in l.shares.iter().enumerate() {
+        let of = Of::Share(i);
         if let Some(least) = share.min {
-            rules.push((WholeRule::ShareMin(i, least), (Rule::ShareMin, Of::Share(i), least, -1.0)));
+            let told = Told { of, side: -1.0, ..Told::whole(Rule::ShareMin, least) };
+            rules.push((WholeRule::ShareMin(i, least), told));
         }
         if let Some(most) = share.max {
-            rules.push((WholeRule::ShareMax(i, most), (Rule::ShareMax, Of::Share(i), most, 1.0)));
+            rules.push((WholeRule::ShareMax(i, most), Told { of, ..Told::whole(Rule::ShareMax, most) }));
         }
     }
-    let hours = l.change_hours.unwrap_or(1.0);
+    let (per_hour, per_day) = limits::change_times(question.site);
     let changes = [
-        (Rule::TemperatureChangePerHour, l.temperature_change_c_per_hour.map(|c| c * hours)),
-        (Rule::TemperatureChangePerDay, l.temperature_change_c_per_day.map(|c| c * (hours / 24.0).max(1.0))),
+        (Rule::TemperatureChangePerHour, l.temperature_change_c_per_hour, per_hour),
+        (Rule::TemperatureChangePerDay, l.temperature_change_c_per_day, per_day),
     ];
-    for (rule, most) in changes {
-        if let (Some(from_c), Some(most_c)) = (question.now_c, most) {
-            rules.push((
-                WholeRule::TemperatureChange { from_c, most_c },
-                (rule, Of::Whole, most_c, 1.0),
-            ));
+    for (rule, rate, times) in changes {
+        if let (Some(from_c), Some(rate)) = (question.before.temperature_c, rate) {
+            let most_c = rate * times;
+            rules.push((WholeRule::TemperatureChange { from_c, most_c }, Told::whole(rule, most_c)));
         }
     }
     if question.now.is_some() {
         if let Some(most) = l.max_moves {
-            rules.push((WholeRule::Moves(most as f64), (Rule::MaxMoves, Of::Whole, most as f64, 1.0)));
+            rules.push((WholeRule::Moves(most as f64), Told::whole(Rule::MaxMoves, most as f64)));
         }
         if let Some(most) = l.max_crew_hours {
-            rules.push((WholeRule::CrewHours(most), (Rule::MaxCrewHours, Of::Whole, most, 1.0)));
+            rules.push((WholeRule::CrewHours(most), Told::whole(Rule::MaxCrewHours, most)));
         }
     }
     if shared {
-        for layer in 0..l.undrawn.len() {
-            rules.push((WholeRule::Undrawn(layer), (Rule::Undrawn, Of::Whole, 0.0, 1.0)));
+        for item in 0..l.undrawn.len() {
+            let told = Told { item, ..Told::whole(Rule::Undrawn, 0.0) };
+            rules.push((WholeRule::Undrawn(item), told));
         }
     }
     rules.into_iter().unzip()
+}
+
+/// Limits that the release asked for breaks, whatever the mix.
+fn hopeless(question: &Question) -> Vec<Check> {
+    let Question { site, profile, blocks, .. } = *question;
+    let mean = blocks.iter().map(|b| b.0 * b.1).sum();
+    let mut out: Vec<Check> = Vec::new();
+    let mut against = |flow_m3s: f64, of_a_day: bool| {
+        let before = Before { temperature_c: None, ..question.before };
+        let release = Whole { flow_m3s, before: Some(before), ..Whole::default() };
+        let mut checks = Vec::new();
+        limits::whole(site, profile.pool_m, &release, &mut checks);
+        out.extend(checks.into_iter().filter(|c| c.broken() && (c.rule == Rule::Drawdown) == of_a_day));
+    };
+    against(mean, true);
+    blocks.iter().for_each(|b| against(b.1, false));
+    out.sort_by(|a, b| a.rule.cmp(&b.rule).then(a.room.total_cmp(&b.room)));
+    out.dedup_by_key(|c| c.rule);
+    out
 }

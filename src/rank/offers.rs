@@ -109,7 +109,7 @@ impl Kitchen<'_> {
         let mut keep = |share: usize, state: Option<usize>, tried: Tried, misses: &mut Vec<Miss>| {
             let open: Vec<(usize, f64)> =
                 state.map_or_else(Vec::new, |s| unit.states[s].open(unit).collect());
-            for check in tried.broken {
+            for check in worst(tried.broken) {
                 note(misses, check, completions[steps - share], &open);
             }
             let Some(mut choice) = tried.choice else { return };
@@ -131,8 +131,8 @@ impl Kitchen<'_> {
         let all_shares: u64 = (1..=steps).map(|k| completions[steps - k]).fold(0, u64::saturating_add);
         for (state, broken) in unit.states.iter().zip(&still) {
             let open: Vec<(usize, f64)> = state.open(unit).collect();
-            for check in broken {
-                note(&mut out.misses, *check, all_shares, &open);
+            for check in worst(broken.clone()) {
+                note(&mut out.misses, check, all_shares, &open);
             }
         }
         if let Some(well) = unit.well {
@@ -417,9 +417,19 @@ fn all_states(unit: &Unit, steps: usize) -> Vec<u64> {
     out
 }
 
+/// Each limit once, with its largest miss over the parts of the day.
+fn worst(mut broken: Vec<Check>) -> Vec<Check> {
+    let which = |c: &Check| (c.rule, c.of, c.item);
+    broken.sort_by(|a, b| which(a).cmp(&which(b)).then(a.room.total_cmp(&b.room)));
+    broken.dedup_by_key(|c| which(c));
+    broken
+}
+
 /// Counts a broken limit, and keeps the smallest miss of each.
 fn note(misses: &mut Vec<Miss>, check: Check, count: u64, open: &[(usize, f64)]) {
-    match misses.iter_mut().find(|m| m.check.rule == check.rule && m.check.of == check.of) {
+    match misses.iter_mut().find(|m| {
+        m.check.rule == check.rule && m.check.of == check.of && m.check.item == check.item
+    }) {
         Some(miss) => {
             miss.count = miss.count.saturating_add(count);
             if check.room > miss.check.room {

@@ -11,6 +11,7 @@ use std::time::Instant;
 
 use chrono::NaiveDate;
 use gatemix::files::site::site;
+use gatemix::mix::limits::Before;
 use gatemix::mix::{Gate, Setting};
 use gatemix::profile::{self, Profile};
 use gatemix::rank::{Criterion, Question, rank};
@@ -91,7 +92,7 @@ fn main() -> ExitCode {
         date,
         blocks: &[(1.0, FLOW_M3S)],
         now: Some(&now),
-        now_c: None,
+        before: Before::default(),
         steps,
         order: &order,
         without: &[],

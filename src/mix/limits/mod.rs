@@ -16,7 +16,7 @@ use crate::units::Dimension;
 pub use gates::{head, level, passing, still, well};
 pub use moves::{Moves, moves};
 pub use unchecked::not_checked;
-pub use whole::{Before, Whole, change, whole};
+pub use whole::{Before, Whole, change, change_times, whole};
 
 /// A limit is missed where its room is below zero by more than this share of its bound: round-off of sums (choice).
 const SAME: f64 = 1e-9;

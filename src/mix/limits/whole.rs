@@ -84,11 +84,16 @@ pub fn change(
     moves
 }
 
-/// A change lasts `change_hours`: so many times the hourly rate is allowed, and of the daily one no less than one.
+/// How many times the hourly and the daily rate a change may come to: it lasts `change_hours`, and no less than a day
+/// counts for the daily one.
+pub fn change_times(site: &Site) -> (f64, f64) {
+    let hours = site.limits.change_hours.unwrap_or(CHANGE_HOURS);
+    (hours, (hours / 24.0).max(1.0))
+}
+
 fn rates(site: &Site, before: Before, flow_m3s: f64, temperature_c: f64, out: &mut Vec<Check>) {
     let limits = &site.limits;
-    let hours = limits.change_hours.unwrap_or(CHANGE_HOURS);
-    let days = (hours / 24.0).max(1.0);
+    let (hours, days) = change_times(site);
     let flow = before.flow_m3s.map(|now| (flow_m3s - now).abs());
     let warmth = before.temperature_c.map(|now| (temperature_c - now).abs());
     for (rule, change, rate, times) in [
