@@ -152,6 +152,8 @@ pub fn judge(
     beware::oxygen(site, &drawn, &release, &spread, &mut warnings);
     beware::half_dry(site, setting, profile.pool_m, &mut warnings);
     beware::leaks(site, setting, &drawn, &mut warnings);
+    beware::wells(site, &groups, setting, profile.pool_m, &mut warnings);
+    beware::vortices(site, setting, profile.pool_m, &mut warnings);
     beware::cautions(site, column, &drawn, &mut warnings);
     Some(Mix { levels: drawn, release, spread, targets, not_checked: not_checked(site, setting), warnings })
 }
@@ -206,8 +208,7 @@ fn standings(site: &Site, release: &Blend, spread: &Spread, date: NaiveDate) -> 
 fn limits(site: &Site, setting: &Setting, pool_m: f64, release: &Blend, warnings: &mut Vec<Problem>) {
     let mut broken = |words: String, cure: &str| warnings.push(Problem::flag("limit", words, cure));
     let mut wells = vec![(0.0_f64, 0_usize); site.wells.len()];
-    // a gate set to nothing is as good as shut
-    for (gate, outlet) in by_name(site, setting).into_iter().filter(|(gate, _)| gate.flow_m3s > 0.0) {
+    for (gate, outlet) in by_name(site, setting).into_iter().filter(|(gate, _)| setting.stands_open(site, gate)) {
         let name = &outlet.name;
         let depth = intake::submergence_m(outlet, gate.opening, pool_m);
         if let Some(least) = outlet.min_submergence_m
@@ -237,7 +238,25 @@ fn limits(site: &Site, setting: &Setting, pool_m: f64, release: &Blend, warnings
             wells[well].1 += 1;
         }
     }
-    for (well, (flow, open)) in site.wells.iter().zip(wells) {
+    for leak in &setting.leaks {
+        if let Some(well) = site.outlets.get(leak.outlet).and_then(|o| o.well) {
+            wells[well].0 += leak.flow_m3s;
+        }
+    }
+    for (index, (well, (flow, open))) in site.wells.iter().zip(wells).enumerate() {
+        if let (Some(most), Some(head)) = (well.max_head_loss_m, setting.head_m(index))
+            && head > most * (1.0 + 1e-9)
+        {
+            broken(
+                format!(
+                    "max_head_loss of well `{}`: {} at this flow, {} allowed",
+                    well.name,
+                    say::m(head, 2),
+                    say::m(most, 2)
+                ),
+                "lower its flow, or open its gates further",
+            );
+        }
         if let Some(most) = well.max_flow_m3s
             && flow > most * (1.0 + 1e-9)
         {
@@ -294,8 +313,10 @@ fn not_checked(site: &Site, setting: &Setting) -> Vec<String> {
     let mut wells: Vec<usize> = used.iter().filter_map(|(_, outlet)| outlet.well).collect();
     wells.sort_unstable_by_key(|&w| &site.wells[w].name);
     wells.dedup();
-    for well in wells.iter().map(|&w| &site.wells[w]) {
-        out.push(format!("max_head_loss of {}", well.name));
+    for (index, well) in wells.iter().map(|&w| (w, &site.wells[w])) {
+        if well.max_head_loss_m.is_none() || setting.head_m(index).is_none() {
+            out.push(format!("max_head_loss of {}", well.name));
+        }
         if well.max_flow_m3s.is_none() {
             out.push(format!("max_flow of {}", well.name));
         }
