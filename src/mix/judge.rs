@@ -208,7 +208,9 @@ fn standings(site: &Site, release: &Blend, spread: &Spread, date: NaiveDate) -> 
 fn limits(site: &Site, setting: &Setting, pool_m: f64, release: &Blend, warnings: &mut Vec<Problem>) {
     let mut broken = |words: String, cure: &str| warnings.push(Problem::flag("limit", words, cure));
     let mut wells = vec![(0.0_f64, 0_usize); site.wells.len()];
-    for (gate, outlet) in by_name(site, setting).into_iter().filter(|(gate, _)| setting.stands_open(site, gate)) {
+    for (gate, outlet) in
+        by_name(site, setting).into_iter().filter(|(gate, _)| setting.stands_open(site, gate))
+    {
         let name = &outlet.name;
         let depth = intake::submergence_m(outlet, gate.opening, pool_m);
         if let Some(least) = outlet.min_submergence_m

@@ -68,13 +68,7 @@ struct Filling {
 /// The water a gate takes in is that of its whole level, whichever wells and outlets draw there, so the wells are
 /// gone through in turn until no flow moves by more than 1e-9 of its well's total. Where a loss is assumed the same
 /// setting at its least and greatest goes along, for the band.
-pub fn resolve(
-    site: &Site,
-    column: &Column,
-    groups: &[Vec<usize>],
-    asked: &Asked,
-    pool_m: f64,
-) -> Setting {
+pub fn resolve(site: &Site, column: &Column, groups: &[Vec<usize>], asked: &Asked, pool_m: f64) -> Setting {
     let at = |asked: &Asked, loss: f64| at_loss(site, column, groups, asked, pool_m, loss);
     let mut setting = at(asked, ASSUMED_LOSS);
     if setting.wells.iter().any(|w| w.assumed_loss) {
@@ -130,7 +124,8 @@ fn at_loss(
         .map(|group| {
             let set = group.iter().filter_map(|i| asked.direct.iter().find(|g| g.outlet == *i));
             let leaks = group.iter().filter(|&&i| leaks_directly(site, asked, i, pool_m));
-            let leak = |&i: &usize| intake::leak_m3s(&site.outlets[i], pool_m - site.outlets[i].centre_m, 0.5);
+            let leak =
+                |&i: &usize| intake::leak_m3s(&site.outlets[i], pool_m - site.outlets[i].centre_m, 0.5);
             set.map(|g| g.flow_m3s).sum::<f64>() + leaks.map(leak).sum::<f64>()
         })
         .collect();
@@ -149,9 +144,8 @@ fn at_loss(
     let mut setting = Setting::of(asked.direct.clone());
     for Filling { mut state, gates } in wells {
         let passes = gates.iter().filter(|g| g.port.area_m2 > 0.0);
-        state.split = passes
-            .map(|g| Gate { outlet: g.outlet, opening: g.opening, flow_m3s: g.flow_m3s })
-            .collect();
+        state.split =
+            passes.map(|g| Gate { outlet: g.outlet, opening: g.opening, flow_m3s: g.flow_m3s }).collect();
         let (open, leaks): (Vec<Gate>, Vec<Gate>) = state.split.iter().partition(|g| g.opening > 0.0);
         setting.gates.extend(open);
         setting.leaks.extend(leaks);
@@ -236,8 +230,7 @@ fn seats(
     groups
         .iter()
         .map(|group| {
-            let members: Vec<(usize, f64)> =
-                group.iter().filter_map(|&i| Some((i, opening(i)?))).collect();
+            let members: Vec<(usize, f64)> = group.iter().filter_map(|&i| Some((i, opening(i)?))).collect();
             seat(site, &members, 0.5, CrestForm::default())
         })
         .collect()

@@ -30,8 +30,11 @@ pub(in crate::mix) fn wells(
         let name = &site.wells[state.well].name;
         let mut flag = |kind, words: String, cure: &str| warnings.push(Problem::flag(kind, words, cure));
         if state.given && differs(site, groups, setting, state, pool_m) {
-            let assumed =
-                if state.assumed_loss { format!(", a loss of {ASSUMED_LOSS} assumed") } else { String::new() };
+            let assumed = if state.assumed_loss {
+                format!(", a loss of {ASSUMED_LOSS} assumed")
+            } else {
+                String::new()
+            };
             let words = format!(
                 "well {name} at {} would pass {}{assumed}: the flows given are not how it would share them",
                 say::m3s(state.flow_m3s, 1),
