@@ -55,7 +55,7 @@ fn scenario_limits_met_exactly_are_not_broken() {
     let mix = mix(&|_| {});
     assert_eq!(broken(&mix), [""; 0]);
     let told: Vec<&str> = mix.not_checked.iter().map(String::as_str).collect();
-    // the head on the structure is not computed yet, so even a given one is not checked
+    // of flows alone no split tells the head on the structure, so even a given one is not checked
     assert_eq!(told, [&["max_head_loss of Shaft"][..], &NEVER[..]].concat());
 }
 

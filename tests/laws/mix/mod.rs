@@ -1,4 +1,4 @@
-//! Laws of a mix: order, balance, leaks, overlaps, the band, limits and standings.
+//! Laws of a mix: order, balance, wells, leaks, overlaps, the band, limits and standings.
 
 mod balance;
 mod band;
@@ -8,3 +8,4 @@ mod limits;
 mod order;
 mod overlaps;
 mod sites;
+mod wells;
