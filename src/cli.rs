@@ -13,7 +13,7 @@ use crate::files::folder::{demonstration_files, demonstrations};
 use crate::mix::TargetStanding;
 use crate::problem::{Problem, any_refused, harmless};
 use crate::report::{json, text};
-use crate::tasks::{self, Asked, Failure};
+use crate::tasks::{self, Asked, Failure, Word};
 use crate::units::System;
 
 /// Which gates, how far open: release temperature and oxygen from a layered reservoir.
@@ -37,9 +37,16 @@ enum Command {
     Mix {
         #[command(flatten)]
         common: Common,
-        /// A gate and its flow, such as N1=30 or Sluice=5cfs; repeat for each gate. Without any, the setting now.
+        /// A gate and its flow, such as N1=30 or Sluice=5cfs, or a well and its total; repeat for each. Without
+        /// any setting, the one now.
         #[arg(long = "set", value_name = "GATE=FLOW")]
         set: Vec<String>,
+        /// A gate and its opening, such as N1=50% or the name of a position; its well decides the flow.
+        #[arg(long = "open", value_name = "GATE=OPENING")]
+        open: Vec<String>,
+        /// What the well of the gates opened carries, where only one well has any and nothing is set beside.
+        #[arg(long, value_name = "FLOW")]
+        release: Option<String>,
         /// Exit with 4 when a target is missed.
         #[arg(long)]
         strict: bool,
@@ -267,9 +274,13 @@ fn answer(cli: &Cli, clock: DateTime<Utc>) -> Result<(Vec<u8>, End), Stop> {
             };
             Ok((shown.into_bytes(), End::Answered))
         }
-        Some(Command::Mix { common, set, strict }) => {
+        Some(Command::Mix { common, set, open, release, strict }) => {
             let context = tasks::open(&common.asked(), clock)?;
-            let answer = tasks::mix(&context, set)?;
+            let words: Vec<Word> = (set.iter().map(|text| Word::Set(text)))
+                .chain(open.iter().map(|text| Word::Open(text)))
+                .chain(release.iter().map(|text| Word::Release(text)))
+                .collect();
+            let answer = tasks::mix(&context, &words)?;
             let shown = if common.json { json::mix(&context, &answer) } else { text::mix(&context, &answer) };
             let missed = *strict && answer.mix.targets.iter().any(TargetStanding::missed);
             Ok((shown.into_bytes(), if missed { End::Missed } else { End::Answered }))

@@ -11,7 +11,7 @@ mod velocity;
 pub use split::{Entering, Port, Shaft, Split};
 pub use velocity::{entrance_velocity_m_s, gordon_submergence_m, shaft_velocity_head_m, velocity_head_m};
 
-use crate::site::{Kind, Leakage, Outlet, Site};
+use crate::site::{Kind, Leakage, Outlet, SAME_OPENING, Site};
 use crate::water::G_M_S2;
 use crate::withdrawal::free_crest_flow_m3s;
 
@@ -41,19 +41,32 @@ pub fn capacity_m3s(site: &Site, outlet: &Outlet, opening: f64, pool_m: f64) -> 
     if outlet.flow_max_m3s.is_some() {
         return outlet.flow_max_m3s;
     }
-    let part = outlet.open_part(opening);
     match outlet.well.and_then(|w| site.wells.get(w)) {
-        None => {
-            let head = (pool_m - part.centre_m).max(0.0);
-            let coefficient = outlet.discharge.unwrap_or(ASSUMED_DISCHARGE);
-            Some(coefficient * part.area_m2 * (2.0 * G_M_S2 * head).sqrt())
-        }
+        None => Some(orifice_flow_m3s(outlet, opening, pool_m)),
         Some(well) => {
             let head = well.max_head_loss_m?;
             let loss = outlet.loss.unwrap_or(ASSUMED_LOSS);
-            Some(part.area_m2 * (2.0 * G_M_S2 * head / loss).sqrt())
+            Some(outlet.open_part(opening).area_m2 * (2.0 * G_M_S2 * head / loss).sqrt())
         }
     }
+}
+
+/// Flow of an outlet on no well at an opening under a pool, whatever its greatest, m3/s: Cd A sqrt(2 g h), a crest as
+/// [`crest_flow_m3s`]. `None` for a crest partly open by no crest of its own: the flow under its gate is not
+/// modelled.
+pub fn opening_flow_m3s(outlet: &Outlet, opening: f64, pool_m: f64) -> Option<f64> {
+    if !outlet.is_crest() {
+        return Some(orifice_flow_m3s(outlet, opening, pool_m));
+    }
+    let free = opening >= 1.0 - SAME_OPENING || outlet.positions.iter().any(|p| p.crest_m.is_some());
+    if free { crest_flow_m3s(outlet, opening, pool_m) } else { None }
+}
+
+/// Cd A sqrt(2 g h), m3/s.
+fn orifice_flow_m3s(outlet: &Outlet, opening: f64, pool_m: f64) -> f64 {
+    let part = outlet.open_part(opening);
+    let head_m = (pool_m - part.centre_m).max(0.0);
+    outlet.discharge.unwrap_or(ASSUMED_DISCHARGE) * part.area_m2 * (2.0 * G_M_S2 * head_m).sqrt()
 }
 
 /// Flow over a crest at an opening under a pool, m3/s: the site's rating where it has one (held beyond its last row),
@@ -74,9 +87,9 @@ pub fn crest_flow_m3s(outlet: &Outlet, opening: f64, pool_m: f64) -> Option<f64>
     Some(flow)
 }
 
-/// Whether a crest spills whenever the pool stands above it.
+/// Whether a crest spills whenever the pool stands above it; into a well it passes what the conduit draws.
 pub fn spills_by_itself(outlet: &Outlet) -> bool {
-    matches!(outlet.kind, Kind::Crest { gated: false, .. })
+    outlet.well.is_none() && matches!(outlet.kind, Kind::Crest { gated: false, .. })
 }
 
 /// Area of the port that would leak as a shut gate does, always open, m2: q_ref sqrt(K/(2 g h_ref)).

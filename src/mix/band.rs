@@ -187,11 +187,8 @@ impl Perturbed {
 fn at_loss(setting: &Setting, place: f64) -> Cow<'_, Setting> {
     let [low, high] = setting.at_losses.as_slice() else { return Cow::Borrowed(setting) };
     let middle = (ASSUMED_LOSS / LEAST_LOSS).ln() / (GREATEST_LOSS / LEAST_LOSS).ln();
-    let (other, share) = if place < middle {
-        (low, 1.0 - place / middle)
-    } else {
-        (high, (place - middle) / (1.0 - middle))
-    };
+    let (other, share) =
+        if place < middle { (low, 1.0 - place / middle) } else { (high, (place - middle) / (1.0 - middle)) };
     let mut out = setting.clone();
     for (gates, others) in [(&mut out.gates, &other.gates), (&mut out.leaks, &other.leaks)] {
         for gate in gates {

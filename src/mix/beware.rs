@@ -2,6 +2,8 @@
 //!
 //! Methods: `docs/methods.md`, section 5.
 
+mod wells;
+
 use std::f64::consts::PI;
 
 use crate::intake;
@@ -14,6 +16,8 @@ use crate::withdrawal::{End, Side};
 use super::band::Spread;
 use super::blend::{Blend, Drawn, overlapping, release_joined};
 use super::levels::Setting;
+
+pub(super) use wells::{vortices, wells};
 
 /// A zone thinner than this many opening heights is no longer that of a point sink (common practice, no source).
 const THIN_HEIGHTS: f64 = 2.0;
@@ -161,10 +165,12 @@ pub(super) fn half_dry(site: &Site, setting: &Setting, pool_m: f64, warnings: &m
 /// Shut gates that leak.
 pub(super) fn leaks(site: &Site, setting: &Setting, drawn: &[Drawn], warnings: &mut Vec<Problem>) {
     let set = |i: &usize| setting.gates.iter().any(|g| g.outlet == *i);
+    // density can hold a leak into a well as it can a gate
+    let held = |i: &usize| setting.leaks.iter().any(|g| g.outlet == *i && g.flow_m3s <= 0.0);
     let mut names: Vec<&str> = drawn
         .iter()
         .flat_map(|d| &d.level.outlets)
-        .filter(|i| !set(i))
+        .filter(|i| !set(i) && !held(i))
         .map(|&i| site.outlets[i].name.as_str())
         .collect();
     names.sort_unstable();

@@ -155,6 +155,8 @@ pub fn judge(
     beware::oxygen(site, &drawn, &release, &spread, &mut warnings);
     beware::half_dry(site, setting, profile.pool_m, &mut warnings);
     beware::leaks(site, setting, &drawn, &mut warnings);
+    beware::wells(site, &groups, setting, profile.pool_m, &mut warnings);
+    beware::vortices(site, setting, profile.pool_m, &mut warnings);
     beware::cautions(site, column, &drawn, &mut warnings);
     let not_checked = limits::not_checked(site, column, setting, &drawn, &limits);
     Some(Mix { levels: drawn, release, spread, targets, limits, not_checked, warnings })
@@ -220,7 +222,7 @@ fn limits(
     let mut wells = vec![(0.0_f64, 0_usize); site.wells.len()];
     // a gate set to nothing is as good as shut
     let open: Vec<(&Gate, &Outlet)> =
-        by_name(site, setting).into_iter().filter(|(gate, _)| gate.flow_m3s > 0.0).collect();
+        by_name(site, setting).into_iter().filter(|(gate, _)| setting.stands_open(site, gate)).collect();
     for (gate, outlet) in &open {
         limits::still(site, gate.outlet, gate.opening, pool_m, date, &mut out);
         limits::passing(site, gate.outlet, gate.opening, gate.flow_m3s, pool_m, &mut out);
@@ -244,7 +246,7 @@ fn limits(
     let mut order: Vec<usize> = (0..wells.len()).filter(|&w| wells[w].1 > 0).collect();
     order.sort_unstable_by_key(|&w| &site.wells[w].name);
     for well in order {
-        limits::well(site, well, wells[well].1, wells[well].0, None, &mut out);
+        limits::well(site, well, wells[well].1, wells[well].0, setting.head_m(well), &mut out);
     }
     for level in drawn {
         let first = level.level.outlets.iter().copied().find(|&o| is_open(o));

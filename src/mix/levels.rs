@@ -9,6 +9,8 @@ use crate::site::{Kind, Outlet, Site};
 use crate::water::G_M_S2;
 use crate::withdrawal::{CrestForm, Opening, Sink};
 
+use super::wells::WellState;
+
 /// Crests this near in elevation draw as one, m (choice).
 const SAME_CREST_M: f64 = 0.1;
 /// Angles this near are equal, rad.
@@ -34,12 +36,26 @@ pub struct Setting {
     pub leaks: Vec<Gate>,
     /// The same setting with an assumed loss at its least and at its greatest; empty where no loss is assumed.
     pub at_losses: Vec<Setting>,
+    /// What each well does that carries any, by name, where a split has told it.
+    pub wells: Vec<WellState>,
 }
 
 impl Setting {
     /// Gates with given flows, nothing told of leaks.
     pub fn of(gates: Vec<Gate>) -> Self {
         Self { gates, ..Self::default() }
+    }
+
+    /// Whether a gate of it stands open: one that is given no flow is as good as shut, one that its well leaves
+    /// without is not.
+    pub fn stands_open(&self, site: &Site, gate: &Gate) -> bool {
+        let well = site.outlets.get(gate.outlet).and_then(|o| o.well);
+        gate.flow_m3s > 0.0 || self.wells.iter().any(|w| Some(w.well) == well && !w.given)
+    }
+
+    /// Head over the structure of a well, m; `None` where no split has told it, or with a loss that is assumed.
+    pub fn head_m(&self, well: usize) -> Option<f64> {
+        self.wells.iter().find(|w| w.well == well && !w.assumed_loss).map(|w| w.head_m)
     }
 }
 
@@ -111,7 +127,7 @@ pub fn levels(
     leak_place: f64,
     form: CrestForm,
 ) -> Vec<Level> {
-    let flows = with_leaks(site, groups, setting, pool_m, leak_place);
+    let flows = passing(site, groups, setting, pool_m, leak_place);
     groups
         .iter()
         .filter_map(|group| {
@@ -172,7 +188,7 @@ pub fn seat(site: &Site, members: &[(usize, f64)], leak_place: f64, form: CrestF
 /// Leaks that a split has told follow their place in their range, the well's total kept. Where none is told, all
 /// ports of a well share its total in proportion to what they would pass at the head of the set flows; for one open
 /// gate that is the split by area and loss. Sums run in the order of the groups, never of the file.
-fn with_leaks(
+pub(super) fn passing(
     site: &Site,
     groups: &[Vec<usize>],
     setting: &Setting,

@@ -16,19 +16,20 @@ const SETTLED: f64 = 1e-9;
 /// Most rounds over the wells (choice); one well settles in one.
 const ROUNDS: usize = 60;
 
-/// What is set, before the wells have shared out their totals.
+/// What is set, before the wells have shared out their totals. Each well has either flows of its gates or a total
+/// and openings.
 #[derive(Debug, Clone, Default, PartialEq)]
 pub struct Asked {
-    /// Outlets on no well, with opening and flow.
+    /// Outlets whose flow is given, with their opening.
     pub direct: Vec<Gate>,
-    /// Open gates of wells: outlet and opening, 0 to 1.
+    /// Open gates of wells with a total: outlet and opening, 0 to 1.
     pub open: Vec<(usize, f64)>,
     /// Totals of wells: well and flow, m3/s.
     pub totals: Vec<(usize, f64)>,
 }
 
 /// What a well does.
-#[derive(Debug, Clone, Copy, PartialEq)]
+#[derive(Debug, Clone, PartialEq)]
 pub struct WellState {
     /// Index of the well.
     pub well: usize,
@@ -40,6 +41,10 @@ pub struct WellState {
     pub settled: bool,
     /// Its gates give no loss, so one is assumed.
     pub assumed_loss: bool,
+    /// The flows of its gates were given: this is what it would do with their total.
+    pub given: bool,
+    /// How it shares its flow among what is open, leaks at opening 0 included; from the lowest up.
+    pub split: Vec<Gate>,
 }
 
 /// One port of a well under way.
@@ -57,24 +62,50 @@ struct Filling {
     gates: Vec<Gated>,
 }
 
-/// Flows of what is asked, with the state of each well that carries any.
+/// Flows of what is asked, with the state of each well that carries any. Flows that are given stay; the state of
+/// their well is what it would do with their total.
 ///
 /// The water a gate takes in is that of its whole level, whichever wells and outlets draw there, so the wells are
 /// gone through in turn until no flow moves by more than 1e-9 of its well's total. Where a loss is assumed the same
 /// setting at its least and greatest goes along, for the band.
-pub fn resolve(
-    site: &Site,
-    column: &Column,
-    groups: &[Vec<usize>],
-    asked: &Asked,
-    pool_m: f64,
-) -> (Setting, Vec<WellState>) {
-    let at = |loss: f64| at_loss(site, column, groups, asked, pool_m, loss);
-    let (mut setting, wells) = at(ASSUMED_LOSS);
-    if wells.iter().any(|w| w.assumed_loss) {
-        setting.at_losses = [LEAST_LOSS, GREATEST_LOSS].map(|loss| at(loss).0).into();
+pub fn resolve(site: &Site, column: &Column, groups: &[Vec<usize>], asked: &Asked, pool_m: f64) -> Setting {
+    let at = |asked: &Asked, loss: f64| at_loss(site, column, groups, asked, pool_m, loss);
+    let mut setting = at(asked, ASSUMED_LOSS);
+    if setting.wells.iter().any(|w| w.assumed_loss) {
+        setting.at_losses = [LEAST_LOSS, GREATEST_LOSS].map(|loss| at(asked, loss)).into();
     }
-    (setting, wells)
+    let totalled = asked.with_totals(site);
+    if totalled.totals.len() > asked.totals.len() {
+        let opened: Vec<usize> = asked.totals.iter().map(|t| t.0).collect();
+        let given = at(&totalled, ASSUMED_LOSS).wells.into_iter().filter(|w| !opened.contains(&w.well));
+        setting.wells.extend(given.map(|w| WellState { given: true, ..w }));
+        setting.wells.sort_by_key(|w| &site.wells[w.well].name);
+    }
+    setting
+}
+
+impl Asked {
+    /// The same with flows given to gates of a well as its total, those gates open as they are.
+    fn with_totals(&self, site: &Site) -> Self {
+        let (gates, direct): (Vec<Gate>, Vec<Gate>) =
+            self.direct.iter().partition(|g| site.outlets[g.outlet].well.is_some());
+        let mut out = Self { direct, ..self.clone() };
+        out.open.extend(gates.iter().filter(|g| g.flow_m3s > 0.0).map(|g| (g.outlet, g.opening)));
+        for well in 0..site.wells.len() {
+            let mut flows: Vec<f64> = gates
+                .iter()
+                .filter(|g| site.outlets[g.outlet].well == Some(well))
+                .map(|g| g.flow_m3s)
+                .collect();
+            // so that the order in which they were given changes no digit
+            flows.sort_by(f64::total_cmp);
+            let total: f64 = flows.iter().sum();
+            if total > 0.0 {
+                out.totals.push((well, total));
+            }
+        }
+        out
+    }
 }
 
 /// The same with `loss` for losses the site does not give.
@@ -85,16 +116,17 @@ fn at_loss(
     asked: &Asked,
     pool_m: f64,
     loss: f64,
-) -> (Setting, Vec<WellState>) {
+) -> Setting {
     let mut wells = fillings(site, groups, asked, pool_m, loss);
     let seats = seats(site, groups, asked, &wells, pool_m);
     let direct_m3s: Vec<f64> = groups
         .iter()
         .map(|group| {
-            let set = asked.direct.iter().filter(|g| group.contains(&g.outlet)).map(|g| g.flow_m3s);
+            let set = group.iter().filter_map(|i| asked.direct.iter().find(|g| g.outlet == *i));
             let leaks = group.iter().filter(|&&i| leaks_directly(site, asked, i, pool_m));
-            let leak = |&i: &usize| intake::leak_m3s(&site.outlets[i], pool_m - site.outlets[i].centre_m, 0.5);
-            set.sum::<f64>() + leaks.map(leak).sum::<f64>()
+            let leak =
+                |&i: &usize| intake::leak_m3s(&site.outlets[i], pool_m - site.outlets[i].centre_m, 0.5);
+            set.map(|g| g.flow_m3s).sum::<f64>() + leaks.map(leak).sum::<f64>()
         })
         .collect();
     for round in 0..ROUNDS {
@@ -110,24 +142,25 @@ fn at_loss(
         }
     }
     let mut setting = Setting::of(asked.direct.clone());
-    for gate in wells.iter().flat_map(|w| &w.gates) {
-        let flow = Gate { outlet: gate.outlet, opening: gate.opening, flow_m3s: gate.flow_m3s };
-        if gate.opening > 0.0 {
-            setting.gates.push(flow);
-        } else if gate.port.area_m2 > 0.0 {
-            setting.leaks.push(flow);
-        }
+    for Filling { mut state, gates } in wells {
+        let passes = gates.iter().filter(|g| g.port.area_m2 > 0.0);
+        state.split =
+            passes.map(|g| Gate { outlet: g.outlet, opening: g.opening, flow_m3s: g.flow_m3s }).collect();
+        let (open, leaks): (Vec<Gate>, Vec<Gate>) = state.split.iter().partition(|g| g.opening > 0.0);
+        setting.gates.extend(open);
+        setting.leaks.extend(leaks);
+        setting.wells.push(state);
     }
-    (setting, wells.into_iter().map(|w| w.state).collect())
+    setting
 }
 
-/// Every well that is to carry something, with all its ports: open, leaking, and shut tight.
+/// Every well that is to carry something, by name, with all its ports: open, leaking, and shut tight.
 fn fillings(site: &Site, groups: &[Vec<usize>], asked: &Asked, pool_m: f64, loss: f64) -> Vec<Filling> {
-    asked
-        .totals
-        .iter()
-        .filter(|(_, flow)| *flow > 0.0)
-        .map(|&(well, flow_m3s)| {
+    let mut totals: Vec<(usize, f64)> = asked.totals.iter().copied().filter(|t| t.1 > 0.0).collect();
+    totals.sort_by_key(|t| &site.wells[t.0].name);
+    totals
+        .into_iter()
+        .map(|(well, flow_m3s)| {
             let gates: Vec<Gated> = groups
                 .iter()
                 .enumerate()
@@ -145,10 +178,16 @@ fn fillings(site: &Site, groups: &[Vec<usize>], asked: &Asked, pool_m: f64, loss
                 })
                 .collect();
             let assumed_loss = gates.iter().any(|g| site.outlets[g.outlet].loss.is_none());
-            Filling {
-                state: WellState { well, flow_m3s, head_m: 0.0, settled: true, assumed_loss },
-                gates,
-            }
+            let state = WellState {
+                well,
+                flow_m3s,
+                head_m: 0.0,
+                settled: true,
+                assumed_loss,
+                given: false,
+                split: Vec::new(),
+            };
+            Filling { state, gates }
         })
         .collect()
 }
@@ -191,8 +230,7 @@ fn seats(
     groups
         .iter()
         .map(|group| {
-            let members: Vec<(usize, f64)> =
-                group.iter().filter_map(|&i| Some((i, opening(i)?))).collect();
+            let members: Vec<(usize, f64)> = group.iter().filter_map(|&i| Some((i, opening(i)?))).collect();
             seat(site, &members, 0.5, CrestForm::default())
         })
         .collect()
@@ -216,19 +254,16 @@ fn share_out(
     let besides: Vec<f64> = gates.iter().map(|g| beside(g.group, g.outlet)).collect();
     let ports: Vec<Port> = gates.iter().map(|g| g.port).collect();
     let supply = |k: usize, flow: f64| entering(column, seats[gates[k].group], besides[k] + flow);
-    let state = wells[w].state;
-    let shaft = Shaft {
-        column,
-        conduit_m: site.wells[state.well].conduit_m,
-        solids_kg_m3: site.water.solids_kg_m3,
-    };
-    let Some(split) = shaft.split(&ports, state.flow_m3s, supply) else {
+    let (well, total_m3s) = (wells[w].state.well, wells[w].state.flow_m3s);
+    let shaft =
+        Shaft { column, conduit_m: site.wells[well].conduit_m, solids_kg_m3: site.water.solids_kg_m3 };
+    let Some(split) = shaft.split(&ports, total_m3s, supply) else {
         wells[w].state.flow_m3s = 0.0;
         return 0.0;
     };
     let mut moved = 0.0_f64;
     for (gate, flow) in wells[w].gates.iter_mut().zip(&split.flows_m3s) {
-        moved = moved.max((gate.flow_m3s - flow).abs() / state.flow_m3s);
+        moved = moved.max((gate.flow_m3s - flow).abs() / total_m3s);
         gate.flow_m3s = *flow;
     }
     wells[w].state.head_m = split.head_m;

@@ -15,9 +15,13 @@ use crate::units::{Dimension, System};
 
 mod mix;
 mod pool;
+mod setting;
+mod words;
 
-pub use mix::{MixAnswer, mix, now_setting};
+pub use mix::{MixAnswer, mix};
 pub use pool::{ColdWater, OutletState, PoolAnswer, pool};
+pub use setting::{Understood, now_setting, setting};
+pub use words::Word;
 
 /// Why a task gave no answer.
 #[derive(Debug, Clone, PartialEq)]

@@ -171,7 +171,8 @@ impl Zone {
                 // temperature is linear in the slice, so what is colder ends where it crosses the threshold
                 let stretch = column.stretch(column.slices().stretch[slice]);
                 let [below, above] = stretch.temperature_c;
-                let crossing = stretch.z_m[0] + (threshold_c - below) / (above - below) * (stretch.z_m[1] - stretch.z_m[0]);
+                let crossing = stretch.z_m[0]
+                    + (threshold_c - below) / (above - below) * (stretch.z_m[1] - stretch.z_m[0]);
                 cold += match (below < threshold_c, above < threshold_c) {
                     (true, true) => flow([low, high]),
                     (false, false) => 0.0,

@@ -40,8 +40,10 @@ fn scenario_a_command_line_that_cannot_be_understood_exits_2() {
 
 #[test]
 fn scenario_mix_without_any_setting_asks_for_one() {
-    for now in ["", "now: { N1: 50% }\n"] {
-        let site = with(SITE, "now: { N1: 30, Sluice: 5 }\n", now);
+    let on_a_well = with(SITE, "outlets:", "wells:\n  - { name: North, conduit: 2 }\noutlets:");
+    let on_a_well = with(&on_a_well, "name: N1,", "name: N1, well: North,");
+    for (site, now) in [(SITE, ""), (&on_a_well, "now: { N1: 50% }\n")] {
+        let site = with(site, "now: { N1: 30, Sluice: 5 }\n", now);
         let folder = Folder::new(&site, &[("a.csv", CAST.as_bytes())]);
         assert!(run(&["mix", folder.named()]).failed_with(2).contains("--set GATE=FLOW"));
         assert_eq!(run(&["pool", folder.named()]).code, Some(0));

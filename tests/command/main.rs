@@ -12,6 +12,7 @@ mod loggers;
 mod refused;
 mod stories;
 mod units;
+mod wells;
 
 use std::fs;
 use std::path::{Path, PathBuf};

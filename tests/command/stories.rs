@@ -126,10 +126,14 @@ fn scenario_an_opening_half_out_of_the_water_is_told() {
 
 #[test]
 fn scenario_a_setting_now_that_cannot_be_shown_says_why() {
-    for (now, why) in
-        [("now: { N1: 500 }\n", "above its capacity"), ("now: { N1: 50% }\n", "openings"), ("", "gives none")]
-    {
-        let site = with(SITE, "now: { N1: 30, Sluice: 5 }\n", now);
+    let well = with(SITE, "outlets:", "wells:\n  - { name: North, conduit: 2 }\noutlets:");
+    let well = with(&well, "name: N1,", "name: N1, well: North,");
+    for (now, why) in [
+        ("now: { N1: 500 }\n", "above its capacity"),
+        ("now: { N1: 50% }\n", "under `now`, North: 30"),
+        ("", "gives none"),
+    ] {
+        let site = with(&well, "now: { N1: 30, Sluice: 5 }\n", now);
         let answer = mix(&folder(&site, CAST), &["--set", "N1=20"]);
         assert!(answer["now"].is_null());
         let note =

@@ -2,11 +2,12 @@
 
 mod shape;
 
+use std::collections::BTreeMap;
 use std::fmt::Write as _;
 
 use serde::Serialize;
 
-use crate::mix::{Drawn, Mix, TargetStanding};
+use crate::mix::{Drawn, Gate, Mix, Setting, TargetStanding, WellState};
 use crate::problem::{Problem, Weight, is_harmful};
 use crate::site::Site;
 use crate::tasks::{Context, MixAnswer, PoolAnswer};
@@ -15,7 +16,7 @@ use crate::withdrawal::{End, Opening};
 
 use shape::{
     ColdJson, FlagJson, Head, LayeringJson, LevelJson, MixJson, NowJson, OutletJson, PoolJson, ProblemJson,
-    ProfileJson, ReleaseJson, TargetJson, WarningJson, ZoneJson,
+    ProfileJson, ReleaseJson, SettingJson, TargetJson, WarningJson, WellJson, ZoneJson,
 };
 
 use super::sentence::{METHOD, caution};
@@ -25,15 +26,13 @@ pub fn mix(context: &Context, answer: &MixAnswer) -> String {
     let site = context.site();
     let shown = MixJson {
         head: head(context, &context.fingerprint, &[]),
+        setting: setting(site, &answer.setting),
+        wells: answer.setting.wells.iter().map(|w| well(site, &answer.setting, w)).collect(),
         levels: answer.mix.levels.iter().map(|d| level(site, d)).collect(),
         release: release(&answer.mix),
         targets: targets(site, &answer.mix),
-        now: answer.now.as_ref().map(|(setting, mix)| NowJson {
-            set: setting
-                .gates
-                .iter()
-                .filter_map(|g| Some((site.outlets.get(g.outlet)?.name.clone(), g.flow_m3s)))
-                .collect(),
+        now: answer.now.as_ref().map(|(now, mix)| NowJson {
+            setting: setting(site, now),
             release: release(mix),
             targets: targets(site, mix),
         }),
@@ -176,6 +175,31 @@ fn head(context: &Context, fingerprint: &str, more_flags: &[Problem]) -> Head {
             flags: of(Weight::Flag),
             notes: of(Weight::Note),
         },
+    }
+}
+
+/// Something of each gate under its name.
+fn by_gate(site: &Site, gates: &[Gate], of: impl Fn(&Gate) -> f64) -> BTreeMap<String, f64> {
+    gates.iter().filter_map(|g| Some((site.outlets.get(g.outlet)?.name.clone(), of(g)))).collect()
+}
+
+fn setting(site: &Site, setting: &Setting) -> SettingJson {
+    SettingJson {
+        set: by_gate(site, &setting.gates, |g| g.flow_m3s),
+        open: by_gate(site, &setting.gates, |g| 100.0 * g.opening),
+    }
+}
+
+fn well(site: &Site, setting: &Setting, state: &WellState) -> WellJson {
+    let well = &site.wells[state.well];
+    WellJson {
+        name: well.name.clone(),
+        flow_m3s: state.flow_m3s,
+        head_m: setting.head_m(state.well),
+        max_head_loss_m: well.max_head_loss_m,
+        settled: state.settled,
+        assumed_loss: state.assumed_loss,
+        split: by_gate(site, &state.split, |g| g.flow_m3s),
     }
 }
 

@@ -1,5 +1,7 @@
 //! The shape of the answers: keys in the order they are written.
 
+use std::collections::BTreeMap;
+
 use serde::Serialize;
 
 #[derive(Serialize)]
@@ -37,6 +39,9 @@ pub(super) struct FlagJson {
 pub(super) struct MixJson {
     #[serde(flatten)]
     pub(super) head: Head,
+    #[serde(flatten)]
+    pub(super) setting: SettingJson,
+    pub(super) wells: Vec<WellJson>,
     pub(super) levels: Vec<LevelJson>,
     pub(super) release: ReleaseJson,
     pub(super) targets: Vec<TargetJson>,
@@ -48,9 +53,28 @@ pub(super) struct MixJson {
 
 #[derive(Serialize)]
 pub(super) struct NowJson {
-    pub(super) set: std::collections::BTreeMap<String, f64>,
+    #[serde(flatten)]
+    pub(super) setting: SettingJson,
     pub(super) release: ReleaseJson,
     pub(super) targets: Vec<TargetJson>,
+}
+
+/// Flow, m3/s, and opening, %, of each gate.
+#[derive(Serialize)]
+pub(super) struct SettingJson {
+    pub(super) set: BTreeMap<String, f64>,
+    pub(super) open: BTreeMap<String, f64>,
+}
+
+#[derive(Serialize)]
+pub(super) struct WellJson {
+    pub(super) name: String,
+    pub(super) flow_m3s: f64,
+    pub(super) head_m: Option<f64>,
+    pub(super) max_head_loss_m: Option<f64>,
+    pub(super) settled: bool,
+    pub(super) assumed_loss: bool,
+    pub(super) split: BTreeMap<String, f64>,
 }
 
 #[derive(Serialize)]

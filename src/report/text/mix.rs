@@ -2,9 +2,9 @@
 
 use std::fmt::Write as _;
 
-use crate::mix::{Drawn, Mix, Setting, TargetStanding};
+use crate::mix::{Drawn, Gate, Mix, Setting, TargetStanding};
 use crate::problem::harmless;
-use crate::site::Site;
+use crate::site::{Outlet, Site};
 use crate::target::{Standing, Target};
 use crate::tasks::{Context, MixAnswer};
 use crate::units::{Dimension, System, figure};
@@ -31,6 +31,7 @@ pub(super) fn body(context: &Context, answer: &MixAnswer) -> String {
     out.push('\n');
     out.push_str(&standings(site, &answer.mix, system));
     out.push_str(&levels(site, &answer.mix.levels, system));
+    out.push_str(&wells(site, &answer.setting, system));
     out.push('\n');
     out.push_str(&drawn_column(site, &context.profile, &answer.mix.levels, system));
     out.push('\n');
@@ -42,17 +43,47 @@ pub(super) fn not_checked(answer: &MixAnswer) -> String {
     wrapped(&format!("Not checked: {}", harmless(&answer.mix.not_checked.join("; "))), 13)
 }
 
-/// What is set, for each gate: `N3 600 cfs`.
+/// What is set, for each gate: `N3 600 cfs`, or `N3 50 % 600 cfs` where it is not known to be fully open.
 fn setting_words(site: &Site, setting: &Setting, system: System) -> String {
-    let mut gates: Vec<(&str, f64)> = setting
-        .gates
+    let mut gates: Vec<(&Outlet, &Gate)> =
+        setting.gates.iter().filter_map(|g| Some((site.outlets.get(g.outlet)?, g))).collect();
+    gates.sort_by(|a, b| a.0.name.cmp(&b.0.name));
+    let shared = |o: &Outlet| setting.wells.iter().any(|w| Some(w.well) == o.well && !w.given);
+    let words: Vec<String> = gates
         .iter()
-        .filter_map(|g| Some((site.outlets.get(g.outlet)?.name.as_str(), g.flow_m3s)))
+        .map(|(o, g)| {
+            let opening =
+                if g.opening < 1.0 || shared(o) { o.opening_name(g.opening) + " " } else { String::new() };
+            harmless(&format!("{} {opening}{}", o.name, flow(g.flow_m3s, system)))
+        })
         .collect();
-    gates.sort_unstable_by(|a, b| a.0.cmp(b.0));
-    let words: Vec<String> =
-        gates.iter().map(|(name, q)| format!("{} {}", harmless(name), flow(*q, system))).collect();
     words.join(", ")
+}
+
+/// What each well carries, and the head of the pool over it.
+fn wells(site: &Site, setting: &Setting, system: System) -> String {
+    let unit = system.unit(Dimension::Length);
+    let mut out = String::new();
+    for state in &setting.wells {
+        let well = &site.wells[state.well];
+        let head = match (setting.head_m(state.well), well.max_head_loss_m) {
+            (None, _) => "head over it unknown: its gates give no loss".to_owned(),
+            (Some(head), None) => {
+                format!("head over it {} {}, no limit given", figure(head, unit, 2), unit.symbol())
+            }
+            (Some(head), Some(most)) => {
+                format!(
+                    "head over it {} of {} {}",
+                    figure(head, unit, 2),
+                    figure(most, unit, 2),
+                    unit.symbol()
+                )
+            }
+        };
+        let words = format!("{} {}, {head}", harmless(&well.name), flow(state.flow_m3s, system));
+        out.push_str(&labelled("Well", &words));
+    }
+    out
 }
 
 fn release_line(mix: &Mix, system: System) -> String {

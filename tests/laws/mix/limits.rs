@@ -69,7 +69,7 @@ fn scenario_limits_met_exactly_are_not_broken() {
         "pool_window of Lower, Sluice, Upper",
         "moves_under_flow of Lower, Sluice, Upper",
         "max_entrance_velocity of Lower, Sluice, Upper",
-        // given, but a setting alone does not tell the head
+        // given, but of flows alone no split tells the head on the structure
         "max_head_loss of Shaft",
     ];
     assert_eq!(told, [&open[..], &NEVER[..]].concat());

@@ -1,4 +1,4 @@
-//! Laws of a mix: order, balance, leaks, overlaps, the band, limits and standings.
+//! Laws of a mix: order, balance, wells, leaks, overlaps, the band, limits and standings.
 
 mod balance;
 mod band;
@@ -10,3 +10,4 @@ mod order;
 mod overlaps;
 mod rules;
 mod sites;
+mod wells;

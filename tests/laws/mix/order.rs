@@ -4,7 +4,7 @@ use gatemix::mix::{Blend, Drawn, Gate, Mix, Spread, TargetStanding, refusals};
 use gatemix::problem::Problem;
 use gatemix::report::{json, text};
 use gatemix::site::Site;
-use gatemix::tasks::{self, Asked, Context, Failure, MixAnswer};
+use gatemix::tasks::{self, Asked, Context, Failure, MixAnswer, Word};
 use proptest::prelude::*;
 
 use super::sites::{Case, Kinds, cases};
@@ -116,7 +116,11 @@ fn asked<T>(
     let pool = pool.map(str::to_owned);
     let asked = Asked { site: path(""), profile: path("cast.csv"), pool, ..Asked::default() };
     let context = tasks::open(&asked, "2026-07-14T18:30:00Z".parse().unwrap()).unwrap();
-    orders(words).iter().map(|sets| told(&context, tasks::mix(&context, sets))).collect()
+    let mix = |sets: &Vec<String>| {
+        let words: Vec<Word> = sets.iter().map(|set| Word::Now(set)).collect();
+        tasks::mix(&context, &words)
+    };
+    orders(words).iter().map(|sets| told(&context, mix(sets))).collect()
 }
 
 /// Several limits of several gates are broken at once.
@@ -138,6 +142,18 @@ fn scenario_the_order_of_set_changes_no_byte() {
     ] {
         assert!(shown[0][0].contains(what), "{what} is broken");
     }
+    assert!(shown.iter().all(|s| *s == shown[0]));
+}
+
+/// A well's total among gates that are opened, beside a flow.
+#[test]
+fn scenario_the_order_of_openings_and_totals_changes_no_byte() {
+    let words = ["Shaft=12", "B=100%", "A=33%", "C=50%", "Sluice=2"];
+    let shown = asked(None, &words, |context, answer| {
+        let answer = answer.unwrap();
+        [json::mix(context, &answer), text::mix(context, &answer)]
+    });
+    assert_eq!(shown.len(), 120);
     assert!(shown.iter().all(|s| *s == shown[0]));
 }
 
