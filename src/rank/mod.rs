@@ -152,7 +152,7 @@ pub fn rank(question: &Question, progress: Progress) -> Result<Ranking, Stopped>
         Found { undrawn: to_judge, ..Found::nothing(ideas, rules.len()) }
     };
     let decoder =
-        Decoder { question, units: &units, offers: &offers, level_of: &level_of, flows_m3s };
+        Decoder { question, units: &units, offers: &offers, levels: &levels, level_of: &level_of, flows_m3s };
     let mut ranking = assembled(&decoder, &found, &told, &offers, to_judge);
     let all = |check| Rejected { check, count: ranking.examined, open: Vec::new() };
     let hopeless: Vec<Rejected> = hopeless.into_iter().map(all).collect();

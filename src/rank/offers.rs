@@ -10,7 +10,7 @@ use rayon::prelude::*;
 
 use crate::intake::{self, ASSUMED_LOSS, Entering, Port, Shaft};
 use crate::mix::limits::{self, Check, Of, Rule};
-use crate::mix::{Gate, Setting, port};
+use crate::mix::{Gate, Setting, WellState, port};
 use crate::site::Site;
 use crate::withdrawal::{Sink, zone};
 
@@ -32,12 +32,23 @@ pub(super) struct Miss {
     pub(super) open: Vec<(usize, f64)>,
 }
 
+/// What a choice of a unit is.
+#[derive(Debug, Clone, Copy)]
+pub(super) struct Code {
+    /// Steps of the release.
+    pub(super) share: usize,
+    /// Index of the state; `None` for shut.
+    pub(super) state: Option<usize>,
+    /// Index among the choices of that share.
+    pub(super) at: usize,
+}
+
 /// Everything known of the units before they are put together.
 pub(super) struct Offers {
     /// Choices of each unit.
     pub(super) choices: Vec<Choices>,
-    /// What each choice is, in the order of its code: steps of the release and state, `None` for shut.
-    pub(super) codes: Vec<Vec<(usize, Option<usize>)>>,
+    /// What each choice is, in the order of its code.
+    pub(super) codes: Vec<Vec<Code>>,
     /// Place of each unit's code in the number of a mix.
     pub(super) places: Vec<u64>,
     /// Sets of open outlets of each unit, and the place of their index in that of ideas.
@@ -123,7 +134,7 @@ impl Kitchen<'_> {
                 masks.len() - 1
             });
             choice.number = codes.len() as u64;
-            codes.push((share, state));
+            codes.push(Code { share, state, at: choices.by_share[share].len() });
             choices.by_share[share].push(choice);
         };
         keep(0, None, self.shut(unit), &mut out.misses);
@@ -381,23 +392,27 @@ impl Kitchen<'_> {
         if unit.spills_m3s.is_some() {
             return;
         }
-        let of_unit = |gates: &[Gate]| {
-            Setting::of(gates.iter().filter(|g| unit.outlets.contains(&g.outlet)).copied().collect())
+        // a gate that its well leaves without water stands open all the same
+        let flow_m3s = flows.iter().map(|f| f.2[0]).sum();
+        let split = |well| WellState {
+            well,
+            flow_m3s,
+            head_m: 0.0,
+            settled: true,
+            assumed_loss: false,
+            given: false,
         };
         let weights = self.levels.weights;
-        let to = Setting::of(
-            flows
-                .iter()
-                .filter(|f| f.1 > 0.0)
-                .map(|f| Gate {
-                    outlet: f.0,
-                    opening: f.1,
-                    flow_m3s: weights.iter().zip(f.2).map(|(w, q)| w * q).sum(),
-                })
-                .collect(),
-        );
+        let open = flows.iter().filter(|f| f.1 > 0.0).map(|f| Gate {
+            outlet: f.0,
+            opening: f.1,
+            flow_m3s: weights.iter().zip(f.2).map(|(w, q)| w * q).sum(),
+        });
+        let to = Setting { wells: unit.well.map(split).into_iter().collect(), ..Setting::of(open.collect()) };
+        let gates = now.gates.iter().filter(|g| unit.outlets.contains(&g.outlet)).copied().collect();
+        let from = Setting { wells: now.wells.clone(), ..Setting::of(gates) };
         let mut checks = Vec::new();
-        let moves = limits::moves(self.site(), &of_unit(&now.gates), &to, &mut checks);
+        let moves = limits::moves(self.site(), &from, &to, &mut checks);
         let at = self.levels.lanes;
         lanes[at.cost()] += moves.cost;
         lanes[at.hours()] += moves.crew_hours;

@@ -4,8 +4,8 @@ use crate::mix::limits::Check;
 use crate::mix::{Asked, Gate};
 
 use super::Question;
-use super::choices::MOST_BLOCKS;
-use super::offers::Offers;
+use super::choices::{Levels, MOST_BLOCKS};
+use super::offers::{Code, Offers};
 use super::units::Unit;
 
 /// One mix of a ranking, as the search knows it.
@@ -19,6 +19,10 @@ pub struct Ranked {
     pub open: Vec<usize>,
     /// Levels drawn through, as indices of the groups of outlets, rising.
     pub levels: Vec<usize>,
+    /// Time mean of its temperature as the search knows it, each gate of a well taking in what it would draw alone, C.
+    pub temperature_c: f64,
+    /// The same of its oxygen, mg/L; `None` where it is not known.
+    pub oxygen_mg_l: Option<f64>,
 }
 
 /// A limit that rejects mixes.
@@ -36,7 +40,7 @@ pub struct Rejected {
 /// A value of an allowed mix.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Extreme {
-    /// The value as the search knows it.
+    /// The value as the search knows it: a time mean.
     pub value: f64,
     /// The mix.
     pub mix: Ranked,
@@ -94,6 +98,7 @@ pub(super) struct Decoder<'a> {
     pub(super) question: &'a Question<'a>,
     pub(super) units: &'a [Unit],
     pub(super) offers: &'a Offers,
+    pub(super) levels: &'a Levels<'a>,
     /// Level of each outlet.
     pub(super) level_of: &'a [usize],
     /// Release shared out in each block, m3/s.
@@ -101,8 +106,8 @@ pub(super) struct Decoder<'a> {
 }
 
 impl Decoder<'_> {
-    /// Steps of the release and state of each unit, `None` for shut.
-    pub(super) fn codes(&self, number: u64) -> Vec<(usize, Option<usize>)> {
+    /// The choice of each unit.
+    fn codes(&self, number: u64) -> Vec<Code> {
         let mut left = number;
         self.offers
             .codes
@@ -111,7 +116,7 @@ impl Decoder<'_> {
             .map(|(codes, place)| {
                 let code = usize::try_from(left / place).unwrap_or(0);
                 left %= place;
-                codes.get(code).copied().unwrap_or((0, None))
+                codes.get(code).copied().unwrap_or(Code { share: 0, state: None, at: 0 })
             })
             .collect()
     }
@@ -122,7 +127,7 @@ impl Decoder<'_> {
         let asked: Vec<Asked> = (0..self.question.blocks.len())
             .map(|block| {
                 let mut asked = Asked::default();
-                for (unit, &(share, state)) in self.units.iter().zip(&codes) {
+                for (unit, &Code { share, state, .. }) in self.units.iter().zip(&codes) {
                     if let Some(flow_m3s) = unit.spills_m3s {
                         let outlet = unit.outlets[0];
                         asked.direct.push(Gate { outlet, opening: 1.0, flow_m3s });
@@ -150,6 +155,29 @@ impl Decoder<'_> {
         let mut levels: Vec<usize> = open.iter().map(|&o| self.level_of[o]).collect();
         levels.sort_unstable();
         levels.dedup();
-        Ranked { asked, number, open, levels }
+        let (temperature_c, oxygen_mg_l) = self.water(&codes);
+        Ranked { asked, number, open, levels, temperature_c, oxygen_mg_l }
+    }
+
+    /// Time mean of temperature (C) and oxygen (mg/L) of a choice for each unit.
+    fn water(&self, codes: &[Code]) -> (f64, Option<f64>) {
+        let lanes = self.levels.lanes;
+        let mut sums = vec![0.0; lanes.count()];
+        let mut unknown = false;
+        let mut parts = Vec::new();
+        for (choices, code) in self.offers.choices.iter().zip(codes) {
+            let Some(choice) = choices.by_share[code.share].get(code.at) else { continue };
+            for (sum, lane) in sums.iter_mut().zip(&choice.lanes) {
+                *sum += lane;
+            }
+            unknown |= choice.unknown;
+            parts.extend(&choice.parts);
+        }
+        unknown |= self.levels.join(&parts, &mut sums);
+        let mean = |lane: usize| -> f64 {
+            let weights = self.levels.weights.iter().enumerate();
+            weights.map(|(b, w)| w * sums[3 * b + lane] / sums[3 * b]).sum()
+        };
+        (mean(1), (!unknown).then(|| mean(2)))
     }
 }

@@ -30,7 +30,7 @@ pub struct Moves {
 pub fn moves(site: &Site, now: &Setting, to: &Setting, out: &mut Vec<Check>) -> Moves {
     let mut moves = Moves::default();
     for (index, outlet) in site.outlets.iter().enumerate() {
-        let moved = moved(outlet, set(now, index), set(to, index));
+        let moved = moved(outlet, set(site, now, index), set(site, to, index));
         if moved {
             moves.count += 1;
             moves.cost += outlet.crew.cost;
@@ -57,16 +57,16 @@ fn moved(outlet: &Outlet, now: (f64, f64), to: (f64, f64)) -> bool {
     }
 }
 
-/// Opening and flow of an outlet; shut where it gives nothing.
-fn set(setting: &Setting, outlet: usize) -> (f64, f64) {
-    let gate = setting.gates.iter().find(|g| g.outlet == outlet && g.flow_m3s > 0.0);
+/// Opening and flow of an outlet; shut where it is given nothing.
+fn set(site: &Site, setting: &Setting, outlet: usize) -> (f64, f64) {
+    let gate = setting.gates.iter().find(|g| g.outlet == outlet && setting.stands_open(site, g));
     gate.map_or((0.0, 0.0), |g| (g.opening, g.flow_m3s))
 }
 
 /// Flow through an outlet's well, or through itself, m3/s.
 fn through(site: &Site, setting: &Setting, outlet: usize) -> f64 {
     match site.outlets[outlet].well {
-        None => set(setting, outlet).1,
+        None => set(site, setting, outlet).1,
         well => {
             let same = |index: usize| site.outlets.get(index).is_some_and(|o| o.well == well);
             setting.gates.iter().filter(|g| same(g.outlet)).map(|g| g.flow_m3s).sum()
