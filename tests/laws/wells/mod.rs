@@ -205,6 +205,26 @@ proptest! {
     }
 }
 
+proptest! {
+    // what this law guards against is rare
+    #![proptest_config(ProptestConfig { max_global_rejects: 20_000, ..config(6000) })]
+
+    /// With the conduit at one end a blocked port's own water, standing from it inward, finds no pressure to enter.
+    #[test]
+    fn law_blocked_ports_are_rightly_blocked_whatever_enters(
+        well in wells(3..=6, prop_oneof![Just(-0.05), Just(1.05)], any_water(), unordered())
+    ) {
+        // ports at one elevation take in one water
+        let apart = |i: usize, j: usize| (well.ports[i].centre_m - well.ports[j].centre_m).abs() > 1e-3;
+        prop_assume!((1..well.ports.len()).all(|i| (0..i).all(|j| apart(i, j))));
+        let column = well.pool.column();
+        let split = well.split(&column);
+        prop_assume!(split.settled && !trickles(&well, &split));
+        let blocked_m = misfit(&well, &column, &split).blocked_m;
+        prop_assert!(blocked_m < NEAR_M, "{} {:?}", blocked_m, split);
+    }
+}
+
 #[test]
 fn law_ports_shut_tight_pass_nothing_at_all() {
     let pool = worked();
