@@ -232,11 +232,7 @@ impl Goal {
 
 /// A number of steps from 0 to what some bits hold.
 #[inline]
-#[expect(
-    clippy::cast_possible_truncation,
-    clippy::cast_sign_loss,
-    reason = "the cast saturates and drops the part below one"
-)]
+#[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "the cast saturates and drops the part below one")]
 fn whole(steps: f64, bits: u32) -> u64 {
     (steps as u64).min((1 << bits) - 1)
 }

@@ -329,13 +329,7 @@ impl<'a> Walk<'a> {
         let lanes = always.len();
         // one set of sums for each depth, made once
         let mut stack: Vec<Sums<'a>> = (0..=self.head.len() + 1)
-            .map(|_| Sums {
-                lanes: vec![0.0; lanes],
-                unknown: *unknown,
-                idea: 0,
-                number: 0,
-                parts: Vec::new(),
-            })
+            .map(|_| Sums { lanes: vec![0.0; lanes], unknown: *unknown, idea: 0, number: 0, parts: Vec::new() })
             .collect();
         stack[0].lanes.copy_from_slice(always);
         put(&mut stack, 0, choice);
@@ -478,7 +472,8 @@ impl<'a> Walk<'a> {
         for (rule, missed) in self.task.rules.iter().zip(&mut found.missed) {
             let (miss, bound) = match *rule {
                 WholeRule::Solids(most) => {
-                    let worst = blocks.clone().map(|b| sum(lanes.solids(b)) / sum(3 * b)).fold(0.0, f64::max);
+                    let worst =
+                        blocks.clone().map(|b| sum(lanes.solids(b)) / sum(3 * b)).fold(0.0, f64::max);
                     (worst - most, most)
                 }
                 WholeRule::ShareMin(rule, least) => {
