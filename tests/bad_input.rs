@@ -10,6 +10,8 @@ mod cursor;
 mod docs;
 #[path = "bad_input/laws.rs"]
 mod laws;
+#[path = "bad_input/limits.rs"]
+mod limits;
 #[path = "bad_input/mutated.rs"]
 mod mutated;
 #[path = "bad_input/site.rs"]

@@ -18,5 +18,7 @@ mod levelling;
 mod mix;
 #[path = "laws/shape.rs"]
 mod shape;
+#[path = "laws/wells/mod.rs"]
+mod wells;
 #[path = "laws/withdrawal.rs"]
 mod withdrawal;

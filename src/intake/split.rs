@@ -12,8 +12,9 @@ use crate::water::G_M_S2;
 use super::branch::{Branch, FOUND, Inlet, Place, TRICKLE};
 use super::root::root;
 
-/// A split has settled when flows meet their sum, and two branches one pressure, to this share (choice).
-const SETTLED: f64 = 1e-9;
+/// A split has settled when flows meet their sum, and two branches one pressure, to this share (choice: the round-off
+/// of densities, which need not matter to a port under a large head, shows at one under a small head).
+const SETTLED: f64 = 1e-6;
 
 /// One port of a well: the open part of a gate, or a leak.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -56,7 +57,8 @@ pub struct Split {
     pub flows_m3s: Vec<f64>,
     /// Largest head of the pool over the well at any port given, shut ones among them, m of water of 1000 kg/m3.
     pub head_m: f64,
-    /// Whether the flows meet their sum and both branches one pressure.
+    /// Whether flows meet their sum, and both branches one pressure, to a millionth. Water that leaps with the flow
+    /// can prevent it.
     pub settled: bool,
 }
 
@@ -77,10 +79,10 @@ impl Shaft<'_> {
     ///
     /// At a port dp = p_pool - p_well = 1000 K q^2/(2 A^2), none where dp <= 0. Towards the conduit p_pool changes
     /// by the integral of g times the pool's density, p_well by g times that of the mixture of all that entered
-    /// farther out; both branches meet at one pressure at the conduit. A port, or a whole branch, gives nothing
-    /// where a trickle of its water, filling the shaft up to the others, would find no pressure to enter
-    /// against. Beyond the farthest open port its own water stands still (choice), in a branch without open
-    /// ports the water at the conduit (choice). The shaft's own velocity head and friction are neglected.
+    /// farther out, or of the port just passed where nothing did; both branches meet at one pressure at the
+    /// conduit. Beyond the farthest open port its own water stands still (choice), in a branch without open ports
+    /// the water at the conduit (choice). The shaft's own velocity head and friction are neglected. Where more
+    /// than one split meets all this, as it can when heavier water enters above lighter, one of them is found.
     ///
     /// The order of the ports changes nothing. Without flow, nothing moves and no head is told. `None` when a
     /// flow is to pass and every port is shut tight.
@@ -101,8 +103,8 @@ impl Shaft<'_> {
         if flow_m3s <= 0.0 {
             return Some(split);
         }
-        let mut upper = self.branch(ports, &supply, |z| z >= self.conduit_m);
-        let mut lower = self.branch(ports, &supply, |z| z < self.conduit_m);
+        let mut upper = self.branch(ports, TRICKLE * flow_m3s, &supply, |z| z >= self.conduit_m);
+        let mut lower = self.branch(ports, TRICKLE * flow_m3s, &supply, |z| z < self.conduit_m);
         let apart_m = match (upper.is_empty(), lower.is_empty()) {
             (true, true) => return None,
             (false, true) => {
@@ -113,7 +115,11 @@ impl Shaft<'_> {
                 lower.carry(flow_m3s);
                 0.0
             }
-            (false, false) => join(&mut upper, &mut lower, flow_m3s),
+            (false, false) => {
+                let apart_m = join(&mut upper, &mut lower, flow_m3s);
+                let near = SETTLED * upper.largest_head_m().max(lower.largest_head_m());
+                if apart_m.abs() <= near { apart_m } else { join(&mut lower, &mut upper, flow_m3s) }
+            }
         };
         let arriving = if upper.flow_m3s() > 0.0 { upper.arriving() } else { lower.arriving() };
         let whole = lower.flow_m3s() + upper.flow_m3s();
@@ -139,16 +145,20 @@ impl Shaft<'_> {
     }
 
     /// The open ports on one side of the conduit.
-    fn branch<F>(&self, ports: &[Port], supply: F, side: impl Fn(f64) -> bool) -> Branch<'_, F> {
+    fn branch<F>(
+        &self,
+        ports: &[Port],
+        trickle_m3s: f64,
+        supply: F,
+        side: impl Fn(f64) -> bool,
+    ) -> Branch<'_, F> {
         let open = ports.iter().enumerate().filter(|(_, p)| p.area_m2 > 0.0 && side(p.centre_m));
         let mut inlets: Vec<Inlet> = open
             .map(|(port, p)| Inlet {
                 port,
                 place: self.place(p.centre_m),
                 conveyance: p.area_m2 * (2.0 * G_M_S2 / p.loss).sqrt(),
-                flow_m3s: 0.0,
-                head_m: 0.0,
-                shaft_kg_m3: 0.0,
+                ..Inlet::default()
             })
             .collect();
         inlets.sort_by(|a, b| {
@@ -157,31 +167,34 @@ impl Shaft<'_> {
             let larger = b.0.total_cmp(&a.0);
             far_b.total_cmp(&far_a).then(larger).then(a.1.total_cmp(&b.1)).then(a.2.cmp(&b.2))
         });
-        Branch { shaft: *self, conduit: self.place(self.conduit_m), supply, inlets }
+        Branch { shaft: *self, conduit: self.place(self.conduit_m), supply, trickle_m3s, inlets }
     }
 }
 
 /// Shares a flow between two branches so that both bring one pressure to the conduit; how far apart they stay, m.
-fn join<F: Fn(usize, f64) -> Entering>(upper: &mut Branch<F>, lower: &mut Branch<F>, flow_m3s: f64) -> f64 {
+///
+/// `one` is followed by the head at its farthest port, along which it never leaps, though one flow of a branch can
+/// come about in several ways; the other carries the rest.
+fn join<F: Fn(usize, f64) -> Entering>(one: &mut Branch<F>, other: &mut Branch<F>, flow_m3s: f64) -> f64 {
     let trickle = TRICKLE * flow_m3s;
-    let ends = [trickle, flow_m3s - trickle];
-    let even_head_m = (flow_m3s / (upper.conveyance() + lower.conveyance())).powi(2);
-    let mut apart_m = |up: f64| {
-        upper.carry(up);
-        lower.carry(flow_m3s - up);
-        upper.arriving().head_m - lower.arriving().head_m
+    let even_head_m = (flow_m3s / (one.conveyance() + other.conveyance())).powi(2);
+    let ends = [trickle, flow_m3s - trickle].map(|flow| one.farthest_m3s(flow));
+    let mut apart_m = |farthest_m3s: f64| {
+        let flow = one.follow(0, farthest_m3s);
+        other.carry((flow_m3s - flow).max(trickle));
+        one.arriving().head_m - other.arriving().head_m
     };
     let at_ends = ends.map(&mut apart_m);
     if at_ends[0] >= 0.0 {
-        upper.shut();
-        lower.carry(flow_m3s);
-        0.0
-    } else if at_ends[1] <= 0.0 {
-        lower.shut();
-        upper.carry(flow_m3s);
-        0.0
-    } else {
-        let found = root(&mut apart_m, ends, at_ends, FOUND * even_head_m);
-        apart_m(found)
+        one.shut();
+        other.carry(flow_m3s);
+        return 0.0;
     }
+    if at_ends[1] <= 0.0 {
+        other.shut();
+        one.carry(flow_m3s);
+        return 0.0;
+    }
+    let found = root(&mut apart_m, ends, at_ends, FOUND * even_head_m);
+    apart_m(found)
 }

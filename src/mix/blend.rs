@@ -3,6 +3,7 @@
 //! Methods: `docs/methods.md`, section 4.
 
 use crate::profile::Column;
+use crate::water;
 use crate::withdrawal::{Draw, Zone, zone};
 
 use super::levels::{Level, as_one};
@@ -33,6 +34,13 @@ pub struct Blend {
     pub suspended_mg_l: f64,
     /// Share of the flow from water below 1 mg/L of oxygen.
     pub oxygen_low_share: f64,
+}
+
+impl Blend {
+    /// Dissolved and suspended solids, mg/L; the salt as [`water::dissolved_g_per_kg`] took it.
+    pub fn solids_mg_l(&self) -> f64 {
+        self.salt_g_per_kg * water::pure_water_kg_m3(self.temperature_c) + self.suspended_mg_l
+    }
 }
 
 /// Solves every level of a setting.

@@ -4,7 +4,7 @@ use chrono::NaiveDate;
 
 use crate::intake;
 use crate::problem::Problem;
-use crate::profile::Profile;
+use crate::profile::{Column, Profile};
 use crate::site::{Outlet, Site};
 use crate::target::{Standing, Target};
 use crate::units::{Dimension, say};
@@ -14,6 +14,7 @@ use super::band::{Perturbed, Spread};
 use super::beware;
 use super::blend::{Blend, Drawn, draw_levels, release};
 use super::levels::{Gate, Setting, groups, levels};
+use super::limits::{self, Check, Of, Whole};
 
 /// Flow over an ungated crest set by hand may differ from its rating by this share (choice).
 const CREST_SHARE: f64 = 0.05;
@@ -59,7 +60,9 @@ pub struct Mix {
     pub spread: Spread,
     /// Standing against every target valid on the date.
     pub targets: Vec<TargetStanding>,
-    /// Limits that nobody gave or that this version cannot judge.
+    /// Every limit that applies, kept or broken.
+    pub limits: Vec<Check>,
+    /// Limits that nobody gave or that what is known does not reach.
     pub not_checked: Vec<String>,
     /// What to beware of, limits broken included.
     pub warnings: Vec<Problem>,
@@ -145,8 +148,8 @@ pub fn judge(
     let release = release(&drawn)?;
     let spread = perturbed.spread(site, &groups, setting, &release);
     let targets = standings(site, &release, &spread, date);
-    let mut warnings = Vec::new();
-    limits(site, setting, profile.pool_m, &release, &mut warnings);
+    let limits = limits(site, column, setting, profile.pool_m, date, &drawn, &release);
+    let mut warnings: Vec<Problem> = broken(site, &limits).collect();
     beware::zones(site, column, &drawn, &mut warnings);
     beware::overlaps(column, &drawn, &release, &mut warnings);
     beware::oxygen(site, &drawn, &release, &spread, &mut warnings);
@@ -155,7 +158,8 @@ pub fn judge(
     beware::wells(site, &groups, setting, profile.pool_m, &mut warnings);
     beware::vortices(site, setting, profile.pool_m, &mut warnings);
     beware::cautions(site, column, &drawn, &mut warnings);
-    Some(Mix { levels: drawn, release, spread, targets, not_checked: not_checked(site, setting), warnings })
+    let not_checked = limits::not_checked(site, column, setting, &drawn, &limits);
+    Some(Mix { levels: drawn, release, spread, targets, limits, not_checked, warnings })
 }
 
 /// Standing of a release against every target valid on a date; the rule with the least room governs.
@@ -204,134 +208,79 @@ fn standings(site: &Site, release: &Blend, spread: &Spread, date: NaiveDate) -> 
     out
 }
 
-/// Limits of the site that the setting breaks.
-fn limits(site: &Site, setting: &Setting, pool_m: f64, release: &Blend, warnings: &mut Vec<Problem>) {
-    let mut broken = |words: String, cure: &str| warnings.push(Problem::flag("limit", words, cure));
+/// Every limit that applies to a setting, by the names of outlets and wells.
+fn limits(
+    site: &Site,
+    column: &Column,
+    setting: &Setting,
+    pool_m: f64,
+    date: NaiveDate,
+    drawn: &[Drawn],
+    release: &Blend,
+) -> Vec<Check> {
+    let mut out = Vec::new();
     let mut wells = vec![(0.0_f64, 0_usize); site.wells.len()];
-    for (gate, outlet) in
-        by_name(site, setting).into_iter().filter(|(gate, _)| setting.stands_open(site, gate))
-    {
-        let name = &outlet.name;
-        let depth = intake::submergence_m(outlet, gate.opening, pool_m);
-        if let Some(least) = outlet.min_submergence_m
-            && depth < least
-        {
-            broken(
-                format!(
-                    "min_submergence of `{name}`: {} of water above it, {} required",
-                    say::m(depth, 2),
-                    say::m(least, 2)
-                ),
-                "use a lower outlet",
-            );
-        }
-        if gate.flow_m3s < outlet.flow_min_m3s {
-            broken(
-                format!(
-                    "flow.min of `{name}`: {} set, {} required",
-                    say::m3s(gate.flow_m3s, 2),
-                    say::m3s(outlet.flow_min_m3s, 2)
-                ),
-                "raise its flow, or shut it",
-            );
-        }
+    // a gate set to nothing is as good as shut
+    let open: Vec<(&Gate, &Outlet)> =
+        by_name(site, setting).into_iter().filter(|(gate, _)| setting.stands_open(site, gate)).collect();
+    for (gate, outlet) in &open {
+        limits::still(site, gate.outlet, gate.opening, pool_m, date, &mut out);
+        limits::passing(site, gate.outlet, gate.opening, gate.flow_m3s, pool_m, &mut out);
         if let Some(well) = outlet.well {
             wells[well].0 += gate.flow_m3s;
             wells[well].1 += 1;
         }
+    }
+    let is_open = |outlet: usize| open.iter().any(|(gate, _)| gate.outlet == outlet);
+    let mut shut: Vec<usize> =
+        site.limits.reserved.iter().map(|r| r.outlet).filter(|&o| !is_open(o)).collect();
+    shut.sort_unstable_by_key(|&o| &site.outlets[o].name);
+    for outlet in shut {
+        limits::passing(site, outlet, 0.0, 0.0, pool_m, &mut out);
     }
     for leak in &setting.leaks {
         if let Some(well) = site.outlets.get(leak.outlet).and_then(|o| o.well) {
             wells[well].0 += leak.flow_m3s;
         }
     }
-    for (index, (well, (flow, open))) in site.wells.iter().zip(wells).enumerate() {
-        if let (Some(most), Some(head)) = (well.max_head_loss_m, setting.head_m(index))
-            && head > most * (1.0 + 1e-9)
-        {
-            broken(
-                format!(
-                    "max_head_loss of well `{}`: {} at this flow, {} allowed",
-                    well.name,
-                    say::m(head, 2),
-                    say::m(most, 2)
-                ),
-                "lower its flow, or open its gates further",
-            );
-        }
-        if let Some(most) = well.max_flow_m3s
-            && flow > most * (1.0 + 1e-9)
-        {
-            broken(
-                format!(
-                    "max_flow of well `{}`: {} set, {} allowed",
-                    well.name,
-                    say::m3s(flow, 2),
-                    say::m3s(most, 2)
-                ),
-                "lower the flow of its gates",
-            );
-        }
-        if let Some(most) = well.max_open
-            && open > most
-        {
-            broken(
-                format!("max_open of well `{}`: {open} gates open, {most} allowed", well.name),
-                "open fewer of its gates",
-            );
+    let mut order: Vec<usize> = (0..wells.len()).filter(|&w| wells[w].1 > 0).collect();
+    order.sort_unstable_by_key(|&w| &site.wells[w].name);
+    for well in order {
+        limits::well(site, well, wells[well].1, wells[well].0, setting.head_m(well), &mut out);
+    }
+    for level in drawn {
+        let first = level.level.outlets.iter().copied().find(|&o| is_open(o));
+        if let (Some(zone), Some(outlet)) = (&level.zone, first) {
+            limits::level(site, column, zone, Of::Outlet(outlet), &mut out);
         }
     }
-    let total = release.flow_m3s;
-    if let Some(least) = site.release.min_m3s
-        && total < least * (1.0 - 1e-9)
-    {
-        broken(
-            format!("release.min: {} in total, {} required", say::m3s(total, 2), say::m3s(least, 2)),
-            "release more",
-        );
-    }
-    if let Some(most) = site.release.max_m3s
-        && total > most * (1.0 + 1e-9)
-    {
-        broken(
-            format!("release.max: {} in total, {} allowed", say::m3s(total, 2), say::m3s(most, 2)),
-            "release less",
-        );
-    }
+    let through = |outlets: &[usize]| {
+        open.iter().filter(|(gate, _)| outlets.contains(&gate.outlet)).map(|(gate, _)| gate.flow_m3s).sum()
+    };
+    let whole = Whole {
+        flow_m3s: release.flow_m3s,
+        temperature_c: release.temperature_c,
+        // water without any solids is water whose solids nobody measured
+        solids_mg_l: Some(release.solids_mg_l()).filter(|s| *s > 0.0),
+        share_flows_m3s: site.limits.shares.iter().map(|rule| through(&rule.outlets)).collect(),
+        before: None,
+        moves: None,
+    };
+    limits::whole(site, pool_m, &whole, &mut out);
+    out
 }
 
-/// Limits nobody gave, and those this version does not judge, by name.
-fn not_checked(site: &Site, setting: &Setting) -> Vec<String> {
-    let mut out = Vec::new();
-    let used = by_name(site, setting);
-    for (_, outlet) in &used {
-        if outlet.min_submergence_m.is_none() {
-            out.push(format!("min_submergence of {}", outlet.name));
-        }
-        if outlet.flow_max_m3s.is_none() && !outlet.is_crest() {
-            out.push(format!("flow.max of {}", outlet.name));
-        }
+/// Warnings of the limits broken.
+fn broken<'a>(site: &'a Site, checks: &'a [Check]) -> impl Iterator<Item = Problem> + 'a {
+    checks.iter().filter(|c| c.broken()).map(|c| Problem::flag("limit", c.words(site), c.cure()))
+}
+
+impl Mix {
+    /// Adds limits judged by a caller who knows more than the setting: the setting now, the head of a well. Warnings
+    /// and what is not checked follow.
+    pub fn add_limits(&mut self, site: &Site, column: &Column, setting: &Setting, checks: Vec<Check>) {
+        self.warnings.extend(broken(site, &checks));
+        self.limits.extend(checks);
+        self.not_checked = limits::not_checked(site, column, setting, &self.levels, &self.limits);
     }
-    let mut wells: Vec<usize> = used.iter().filter_map(|(_, outlet)| outlet.well).collect();
-    wells.sort_unstable_by_key(|&w| &site.wells[w].name);
-    wells.dedup();
-    for (index, well) in wells.iter().map(|&w| (w, &site.wells[w])) {
-        if well.max_head_loss_m.is_none() || setting.head_m(index).is_none() {
-            out.push(format!("max_head_loss of {}", well.name));
-        }
-        if well.max_flow_m3s.is_none() {
-            out.push(format!("max_flow of {}", well.name));
-        }
-        if well.max_open.is_none() {
-            out.push(format!("max_open of {}", well.name));
-        }
-    }
-    if site.release.min_m3s.is_none() {
-        out.push("release.min".into());
-    }
-    if site.release.max_m3s.is_none() {
-        out.push("release.max".into());
-    }
-    out.extend(["max_flow_change", "max_temperature_change", "max_drawdown_per_day"].map(str::to_owned));
-    out
 }

@@ -5,6 +5,7 @@ mod beware;
 mod blend;
 mod judge;
 mod levels;
+pub mod limits;
 mod wells;
 
 pub use band::{GREATEST_LOSS, LEAST_LOSS, Member, Perturbed, Spread, members};

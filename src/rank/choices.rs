@@ -90,6 +90,12 @@ pub(super) struct Choices {
 }
 
 impl Choices {
+    /// Only the choices at every so many steps.
+    pub(super) fn every(&self, steps: usize) -> Self {
+        let thinned = |(k, at): (usize, &Vec<Choice>)| if k % steps == 0 { at.clone() } else { Vec::new() };
+        Self { by_share: self.by_share.iter().enumerate().map(thinned).collect(), units: self.units }
+    }
+
     /// Number of choices over all shares.
     pub(super) fn len(&self) -> usize {
         self.by_share.iter().map(Vec::len).sum()

@@ -37,27 +37,26 @@ impl Criterion {
         Self::NAMES.iter().find(|(_, c)| *c == self).map_or("", |(n, _)| n)
     }
 
-    /// Bits its steps take in a key.
-    fn bits(self) -> u32 {
+    /// How many steps it takes in a key, as powers of two; moves take cost and hours one after the other.
+    fn steps(self) -> f64 {
         match self {
-            Self::Oxygen | Self::Range | Self::Preferred => BITS,
-            Self::ColdWater => COLD_BITS,
-            Self::Moves => 2 * MOVE_BITS,
+            Self::Oxygen | Self::Range | Self::Preferred => STEPS,
+            Self::ColdWater => COLD_STEPS,
+            Self::Moves => MOVE_STEPS * MOVE_STEPS,
         }
     }
 }
 
-/// Steps of one criterion go up to 2^BITS - 1 and stay there (choice: 1023 bins of 0.5 C are beyond any water).
-const BITS: u32 = 10;
-/// The same for cold water: its bins are shares of the release.
-const COLD_BITS: u32 = 8;
-/// The same for moves and for crew hours.
-const MOVE_BITS: u32 = 12;
-/// Cost of moves is told apart to a hundredth, crew hours to a tenth (choice).
-const COST_STEPS: f64 = 100.0;
-const HOUR_STEPS: f64 = 10.0;
-/// Distance of the trade curve per bin, C (choice: finer than any bin, so that the curve is one).
-pub(super) const TRADE_STEP_C: f64 = 0.1;
+/// Steps a criterion can take before it stays where it is (choice: 255 bins of 0.5 C are beyond any water). All
+/// criteria together stay below 2^53, so that a key is a whole number that a float holds exactly.
+const STEPS: f64 = 256.0;
+/// The same for cold water, whose bins are shares of the release.
+const COLD_STEPS: f64 = 128.0;
+/// The same for the cost of moves and for crew hours.
+const MOVE_STEPS: f64 = 1024.0;
+/// Cost of moves is told apart to a tenth, crew hours to a quarter (choice).
+const COST_STEP: f64 = 0.1;
+const HOUR_STEP: f64 = 0.25;
 /// A miss smaller than this is none, C and mg/L: round-off of a blend.
 const ROUND_OFF: f64 = 1e-9;
 
@@ -66,7 +65,7 @@ const ROUND_OFF: f64 = 1e-9;
 struct Wanted {
     low: f64,
     high: f64,
-    /// Least and greatest preferred temperature of the rules; infinite the wrong way round where none.
+    /// Warmer than the first, or colder than the second, is away from what some rule prefers.
     preferred: (f64, f64),
     floor: f64,
 }
@@ -82,25 +81,25 @@ impl Wanted {
     fn add(&mut self, rule: &Target) {
         self.low = self.low.max(rule.low_kept_c().unwrap_or(f64::NEG_INFINITY));
         self.high = self.high.min(rule.high_kept_c().unwrap_or(f64::INFINITY));
-        if let Some(preferred) = rule.preferred_c {
-            self.preferred = (self.preferred.0.min(preferred), self.preferred.1.max(preferred));
-        }
+        // where none is preferred, every temperature of the range is
+        let preferred = [rule.preferred_c.or(rule.high_kept_c()), rule.preferred_c.or(rule.low_kept_c())];
+        self.preferred.0 = self.preferred.0.min(preferred[0].unwrap_or(f64::INFINITY));
+        self.preferred.1 = self.preferred.1.max(preferred[1].unwrap_or(f64::NEG_INFINITY));
         self.floor = self.floor.max(rule.oxygen_min_mg_l.unwrap_or(f64::NEG_INFINITY));
     }
 }
 
-/// What a day's water is judged by: over time, as a gauge sees it.
+/// What a day's water is judged by, over time as a gauge sees it; a number of mixes at once has a range of each.
 #[derive(Debug, Clone, Copy)]
 pub(super) struct Day {
-    /// Time mean, greatest and least temperature, C.
-    pub(super) temperature_c: [f64; 3],
-    /// Time mean and least oxygen, mg/L.
+    /// Least and greatest of the time mean, the greatest and the least temperature of the day, C; of a steady day only
+    /// the first counts.
+    pub(super) temperature_c: [[f64; 2]; 3],
+    /// Greatest of the time mean and of the least oxygen, mg/L.
     pub(super) oxygen_mg_l: [f64; 2],
-    /// Oxygen is known in every block.
-    pub(super) oxygen_known: bool,
-    /// Cold water as a share of the release.
+    /// Least cold water, as a share of the release.
     pub(super) cold_share: f64,
-    /// Cost of moves, and crew hours.
+    /// Least cost of moves, and crew hours.
     pub(super) cost: f64,
     pub(super) hours: f64,
 }
@@ -110,129 +109,109 @@ pub(super) struct Day {
 pub(super) struct Goal {
     /// By mean, greatest and least of the day.
     wanted: [Wanted; 3],
+    has_floor: bool,
     per_c: f64,
     per_mg_l: f64,
     per_share: f64,
-    /// By how much each criterion's steps are shifted in the key, in the order of [`Criterion::NAMES`].
-    shifts: [u32; 5],
+    /// What a step of each criterion weighs in the key, in the order of [`Criterion::NAMES`].
+    weights: [f64; 5],
 }
 
 impl Goal {
     /// The rules of a site valid on a date, judged in an order. Rules for other points than the dam are left out.
-    pub(super) fn new(site: &Site, date: NaiveDate, order: &[Criterion]) -> Self {
+    /// Every statistic of a steady day is held against its one temperature.
+    pub(super) fn new(site: &Site, date: NaiveDate, order: &[Criterion], steady: bool) -> Self {
         let mut wanted = [Wanted::NOTHING; 3];
         for rule in site.targets.iter().filter(|t| t.span.contains(date) && t.point == "dam") {
-            let by = match rule.statistic {
-                Statistic::DailyMean => 0,
-                Statistic::DailyMax | Statistic::SevenDayMeanOfMaxima => 1,
-                Statistic::DailyMin => 2,
-                Statistic::Instantaneous => {
-                    wanted[2].add(rule);
-                    1
-                }
+            let by: &[usize] = match rule.statistic {
+                _ if steady => &[0],
+                Statistic::DailyMean => &[0],
+                Statistic::DailyMax | Statistic::SevenDayMeanOfMaxima => &[1],
+                Statistic::DailyMin => &[2],
+                Statistic::Instantaneous => &[1, 2],
             };
-            wanted[by].add(rule);
+            for &i in by {
+                wanted[i].add(rule);
+            }
         }
         let Bins { temperature_c, oxygen_mg_l, cold_share } = site.bins;
-        let mut shifts = [0; 5];
-        let mut used = 0;
+        let mut weights = [0.0; 5];
+        let mut weight = 1.0;
         for criterion in order.iter().rev() {
-            shifts[*criterion as usize] = used;
-            used += criterion.bits();
+            weights[*criterion as usize] = weight;
+            weight *= criterion.steps();
         }
         Self {
+            has_floor: wanted.iter().any(|w| w.floor > f64::NEG_INFINITY),
             wanted,
             per_c: 1.0 / temperature_c,
             per_mg_l: 1.0 / oxygen_mg_l,
             per_share: 1.0 / cold_share,
-            shifts,
+            weights,
         }
     }
 
-    /// The same with every statistic of a steady day held against its one temperature.
-    pub(super) fn steady(mut self) -> Self {
-        let [mean, most, least] = self.wanted;
-        let all = [mean, most, least];
-        let fold = |read: fn(&Wanted) -> f64, pick: fn(f64, f64) -> f64| {
-            all.iter().map(read).fold(read(&mean), pick)
-        };
-        self.wanted[0] = Wanted {
-            low: fold(|w| w.low, f64::max),
-            high: fold(|w| w.high, f64::min),
-            preferred: (fold(|w| w.preferred.0, f64::min), fold(|w| w.preferred.1, f64::max)),
-            floor: fold(|w| w.floor, f64::max),
-        };
-        self.wanted[1] = Wanted::NOTHING;
-        self.wanted[2] = Wanted::NOTHING;
-        self
-    }
-
-    /// Distance outside the ranges, C, and below the oxygen floors, mg/L; 0 inside.
-    #[inline]
-    fn misses(&self, day: &Day, statistics: usize) -> (f64, f64) {
-        let (mut range, mut oxygen) = (0.0_f64, 0.0_f64);
-        for (i, w) in self.wanted.iter().take(statistics).enumerate() {
-            let t = day.temperature_c[i];
-            range = range.max(w.low - t).max(t - w.high);
-            oxygen = oxygen.max(w.floor - day.oxygen_mg_l[usize::from(i > 0)]);
-        }
-        (range, oxygen)
-    }
-
-    /// Whether any oxygen floor is set.
-    pub(super) fn has_floor(&self) -> bool {
-        self.wanted.iter().any(|w| w.floor > f64::NEG_INFINITY)
-    }
-
-    /// Whether every range and floor is kept.
-    pub(super) fn met(&self, day: &Day) -> bool {
-        let (range, oxygen) = self.misses(day, 3);
-        range <= ROUND_OFF && (!self.has_floor() || (day.oxygen_known && oxygen <= ROUND_OFF))
-    }
-
-    /// Distance from the preferred temperature, C; where no rule prefers one, from the range.
+    /// Least distance from the preferred temperature, C; where no rule prefers one, from the range. `statistics` is 1
+    /// for a steady day, else 3.
     #[inline]
     pub(super) fn distance_c(&self, day: &Day, statistics: usize) -> f64 {
-        let mut distance = 0.0_f64;
-        for (i, w) in self.wanted.iter().take(statistics).enumerate() {
-            let t = day.temperature_c[i];
-            distance = if w.preferred.0 <= w.preferred.1 {
-                distance.max(t - w.preferred.0).max(w.preferred.1 - t)
-            } else {
-                distance.max(w.low - t).max(t - w.high)
-            };
+        let mut distance = 0.0;
+        for (w, [low, high]) in self.wanted.iter().zip(day.temperature_c).take(statistics) {
+            distance = most(most(distance, low - w.preferred.0), w.preferred.1 - high);
         }
         distance
     }
 
-    /// The key by which mixes are ordered: the smaller the better. Unknown oxygen comes after oxygen known to keep
-    /// the floor and before any that does not. `statistics` is 1 for a steady day.
+    /// The key by which mixes are ordered, a whole number: the smaller the better; of a number of mixes, none has a
+    /// smaller one. Unknown oxygen comes after oxygen known to keep the floor and before any that does not.
     #[inline]
-    pub(super) fn key(&self, day: &Day, statistics: usize, distance_c: f64) -> u64 {
-        let (range, oxygen) = self.misses(day, statistics);
-        let oxygen_step = if !self.has_floor() {
-            0
-        } else if !day.oxygen_known {
-            1
-        } else if oxygen > ROUND_OFF {
-            1 + whole((oxygen * self.per_mg_l).ceil(), BITS)
-        } else {
-            0
-        };
-        let range_step = if range > ROUND_OFF { whole((range * self.per_c).ceil(), BITS) } else { 0 };
-        (oxygen_step.min((1 << BITS) - 1) << self.shifts[0])
-            | (range_step << self.shifts[1])
-            | (whole(distance_c * self.per_c + ROUND_OFF, BITS) << self.shifts[2])
-            | (whole(day.cold_share * self.per_share + ROUND_OFF, COLD_BITS) << self.shifts[3])
-            | (((whole(day.cost * COST_STEPS + 0.5, MOVE_BITS) << MOVE_BITS)
-                | whole(day.hours * HOUR_STEPS + 0.5, MOVE_BITS))
-                << self.shifts[4])
+    pub(super) fn key(&self, day: &Day, statistics: usize, distance_c: f64) -> f64 {
+        let (mut range, mut short) = (0.0, 0.0);
+        for (i, (w, [low, high])) in self.wanted.iter().zip(day.temperature_c).take(statistics).enumerate() {
+            range = most(most(range, w.low - high), low - w.high);
+            short = most(short, w.floor - day.oxygen_mg_l[usize::from(i > 0)]);
+        }
+        // a miss of part of a bin is a whole one
+        let missed = if short > ROUND_OFF { 2.0 } else { 0.0 };
+        let oxygen = missed + up_to(whole(short * self.per_mg_l - ROUND_OFF), STEPS - 3.0);
+        let missed = if range > ROUND_OFF { 1.0 } else { 0.0 };
+        let outside = missed + up_to(whole(range * self.per_c - ROUND_OFF), STEPS - 2.0);
+        let far = up_to(whole(distance_c * self.per_c + ROUND_OFF), STEPS - 1.0);
+        let cold = up_to(whole(day.cold_share * self.per_share + ROUND_OFF), COLD_STEPS - 1.0);
+        let cost = up_to(whole(day.cost * (1.0 / COST_STEP) + 0.5), MOVE_STEPS - 1.0);
+        let hours = up_to(whole(day.hours * (1.0 / HOUR_STEP) + 0.5), MOVE_STEPS - 1.0);
+        let [w_oxygen, w_range, w_far, w_cold, w_moves] = self.weights;
+        (oxygen * w_oxygen + outside * w_range)
+            + (far * w_far + cold * w_cold)
+            + (cost * MOVE_STEPS + hours) * w_moves
+    }
+
+    /// The key of a day whose oxygen is unknown.
+    pub(super) fn key_unknown(&self, day: &Day, statistics: usize, distance_c: f64) -> f64 {
+        let told = Day { oxygen_mg_l: [f64::INFINITY; 2], ..*day };
+        let unknown = if self.has_floor { self.weights[0] } else { 0.0 };
+        self.key(&told, statistics, distance_c) + unknown
     }
 }
 
-/// A number of steps from 0 to what some bits hold.
+/// The larger of two numbers that are numbers.
 #[inline]
-#[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "the cast saturates and drops the part below one")]
-fn whole(steps: f64, bits: u32) -> u64 {
-    (steps as u64).min((1 << bits) - 1)
+fn most(a: f64, b: f64) -> f64 {
+    if a > b { a } else { b }
+}
+
+#[inline]
+fn up_to(steps: f64, last: f64) -> f64 {
+    if steps < last { steps } else { last }
+}
+
+/// A float this large has no room for parts of one.
+const WHOLE: f64 = 4_503_599_627_370_496.0;
+
+/// The whole part of a number from 0 up, 0 below: to the nearest whole number of half a step less. Several lanes at
+/// once can do it, which a cast cannot.
+#[inline]
+pub(super) fn whole(steps: f64) -> f64 {
+    let nearest = (steps - 0.5 + 1e-12) + WHOLE - WHOLE;
+    if nearest > 0.0 { nearest } else { 0.0 }
 }

@@ -1,10 +1,341 @@
 //! Every feasible mix judged, rejected with reasons, ordered.
+//!
+//! Methods: `docs/methods.md`, section 10.
 
+mod arrange;
 mod choices;
 mod curve;
+mod found;
 mod goal;
+mod offers;
+mod ranking;
 mod search;
+mod seats;
+mod tail;
+mod units;
+
+use chrono::NaiveDate;
+
+use crate::mix::limits::{self, Before, Check, Of, Rule, Whole};
+use crate::mix::{Setting, groups};
+use crate::problem::Problem;
+use crate::profile::Profile;
+use crate::site::Site;
+use crate::withdrawal::{Opening, Sink, zone};
+
+use arrange::ways;
+use choices::{Lanes, Levels, MOST_BLOCKS, Slot};
+use found::Found;
+use goal::Goal;
+use offers::{Kitchen, Offers};
+use ranking::Decoder;
+use search::{Task, WholeRule};
+use seats::Level;
 
 pub use curve::{Curve, Curves, Water};
 pub use goal::Criterion;
+pub use ranking::{Extreme, Ranked, Ranking, Rejected};
 pub use search::Progress;
+
+/// Most mixes judged in one ranking (choice): about ten seconds of one core.
+const MOST_JUDGED: u64 = 2_000_000_000;
+/// Most ideas, as sets of open outlets (choice).
+const MOST_IDEAS: usize = 2_000_000;
+/// Halvings that find the flow up to which a level keeps out of a layer.
+const HALVINGS: usize = 50;
+/// Curves reach this much beyond the release, for leaks.
+const BEYOND: f64 = 1.1;
+
+/// What a ranking is asked.
+pub struct Question<'a> {
+    /// The site.
+    pub site: &'a Site,
+    /// The water before it.
+    pub profile: &'a Profile,
+    /// The day.
+    pub date: NaiveDate,
+    /// Parts of the day: share of it, and total release, m3/s. One part for a steady day.
+    pub blocks: &'a [(f64, f64)],
+    /// What is set now, where it is known.
+    pub now: Option<&'a Setting>,
+    /// What is released now, where changes from it are to be judged.
+    pub before: Before,
+    /// Steps the release is cut into.
+    pub steps: usize,
+    /// Criteria, the first first.
+    pub order: &'a [Criterion],
+    /// Outlets left out.
+    pub without: &'a [usize],
+}
+
+/// Why there is no ranking.
+#[derive(Debug, Clone, PartialEq)]
+pub enum Stopped {
+    /// The caller stopped it.
+    Cancelled,
+    /// It cannot be made.
+    Refused(Problem),
+}
+
+/// Ranks every mix.
+///
+/// # Errors
+/// A site with more mixes than can be judged; a caller who stops it.
+pub fn rank(question: &Question, progress: Progress) -> Result<Ranking, Stopped> {
+    let Question { site, profile, .. } = *question;
+    let groups = groups(site);
+    let units = units::units(site, &groups, profile.pool_m, question.without).map_err(Stopped::Refused)?;
+    let mut curves = Curves::default();
+    let seats =
+        seats::levels(site, &groups, &units, profile.pool_m, &mut curves).map_err(Stopped::Refused)?;
+    let alone = offers::alone(site, &units, &mut curves);
+    let spilt: f64 = units.iter().filter_map(|u| u.spills_m3s).sum();
+    let mut flows_m3s = [0.0; MOST_BLOCKS];
+    for (flow, block) in flows_m3s.iter_mut().zip(question.blocks) {
+        *flow = (block.1 - spilt).max(0.0);
+    }
+    let most_m3s = BEYOND * (question.blocks.iter().map(|b| b.1).fold(0.0, f64::max) + spilt);
+    curves.solve(&profile.column, most_m3s, site.cold_water_c.first().copied());
+    let slots = slots(question, &seats, &curves, most_m3s);
+    let weights: Vec<f64> = question.blocks.iter().map(|b| b.0).collect();
+    let lanes = Lanes {
+        blocks: question.blocks.len(),
+        solids: site.limits.solids_max_mg_l.is_some(),
+        shares: site.limits.shares.len(),
+    };
+    let levels = Levels { slots: &slots, curves: &curves, lanes, weights: &weights };
+    let mut level_of = vec![0; site.outlets.len()];
+    for (level, group) in groups.iter().enumerate() {
+        for &outlet in group {
+            level_of[outlet] = level;
+        }
+    }
+    let nearest = |outlet: usize, opening: f64| {
+        let off = |o: &&(f64, usize)| (o.0 - opening).abs();
+        alone[outlet].iter().min_by(|a, b| off(a).total_cmp(&off(b))).map(|o| o.1)
+    };
+    let kitchen = Kitchen {
+        question,
+        units: &units,
+        seats: &seats,
+        level_of: &level_of,
+        levels: &levels,
+        alone: &nearest,
+        flows_m3s,
+    };
+    let offers = kitchen.offers();
+    let (rules, told) = whole_rules(question, !slots.is_empty());
+    let counts: Vec<Vec<u64>> = offers.choices.iter().map(choices::Choices::counts).collect();
+    let to_judge = ways(&counts, question.steps)[question.steps];
+    let ideas = offers.masks.iter().fold(1_usize, |n, (masks, _)| n.saturating_mul(masks.len().max(1)));
+    if to_judge > MOST_JUDGED || ideas > MOST_IDEAS || offers.examined == u64::MAX {
+        return Err(Stopped::Refused(Problem::refused(
+            "too-many",
+            format!("there are {to_judge} mixes to judge, more than {MOST_JUDGED}"),
+            "take a coarser --step, give max_open of the wells, or leave gates out with --without",
+        )));
+    }
+    let goal = Goal::new(site, question.date, question.order, question.blocks.len() == 1);
+    let task = Task {
+        units: &offers.choices,
+        levels: &levels,
+        goal: &goal,
+        rules: &rules,
+        steps: question.steps,
+        ideas,
+        progress,
+    };
+    let hopeless = hopeless(question);
+    let found = if hopeless.is_empty() {
+        search::search(&task).ok_or(Stopped::Cancelled)?
+    } else {
+        Found { undrawn: to_judge, ..Found::nothing(ideas, rules.len()) }
+    };
+    let decoder =
+        Decoder { question, units: &units, offers: &offers, level_of: &level_of, flows_m3s };
+    let mut ranking = assembled(&decoder, &found, &told, &offers, to_judge);
+    let all = |check| Rejected { check, count: ranking.examined, open: Vec::new() };
+    let hopeless: Vec<Rejected> = hopeless.into_iter().map(all).collect();
+    ranking.rejected.extend(hopeless);
+    ranking.rejected.sort_by_key(|r| (r.check.rule, r.check.of, r.check.item));
+    Ok(ranking)
+}
+
+/// What was found, as mixes with names.
+fn assembled(
+    decoder: &Decoder,
+    found: &Found,
+    told: &[Told],
+    offers: &Offers,
+    to_judge: u64,
+) -> Ranking {
+    let mut best: Vec<(f64, u64)> = found.best.iter().copied().filter(|b| b.1 != u64::MAX).collect();
+    best.sort_by(|a, b| a.0.total_cmp(&b.0).then(a.1.cmp(&b.1)));
+    let extreme = |at: (f64, u64)| (at.1 != u64::MAX).then(|| Extreme { value: at.0, mix: decoder.mix(at.1) });
+    let both = |low, high| Some([extreme(low)?, extreme(high)?]);
+    let mut rejected: Vec<Rejected> = offers
+        .misses
+        .iter()
+        .map(|m| Rejected { check: m.check, count: m.count, open: m.open.clone() })
+        .collect();
+    for (told, missed) in told.iter().zip(&found.missed) {
+        if missed.count > 0 {
+            let mix = decoder.mix(missed.nearest.1);
+            let open = mix.asked.first().map_or_else(Vec::new, |a| {
+                a.direct.iter().map(|g| (g.outlet, g.opening)).chain(a.open.iter().copied()).collect()
+            });
+            rejected.push(Rejected { check: told.check(missed.nearest.0), count: missed.count, open });
+        }
+    }
+    rejected.sort_by_key(|r| (r.check.rule, r.check.of, r.check.item));
+    let mut trade: Vec<Extreme> = Vec::new();
+    for at in &found.trade {
+        if at.1 != u64::MAX && trade.last().is_none_or(|last| at.0 > last.value) {
+            trade.extend(extreme(*at));
+        }
+    }
+    Ranking {
+        mixes: best.iter().map(|b| decoder.mix(b.1)).collect(),
+        keys: best.iter().map(|b| b.0).collect(),
+        rejected,
+        examined: offers.examined,
+        judged: found.judged,
+        skipped: offers.examined - to_judge + found.undrawn + found.beaten,
+        allowed: to_judge - found.undrawn - found.refused,
+        attainable_c: both(found.coldest, found.warmest),
+        attainable_oxygen_mg_l: both(found.least_oxygen, found.most_oxygen),
+        trade,
+    }
+}
+
+/// Levels that several units draw through, with the flow up to which each keeps out of layers not to be drawn.
+fn slots(question: &Question, seats: &[Level], curves: &Curves, most_m3s: f64) -> Vec<Slot> {
+    let undrawn = question.site.limits.undrawn.len();
+    seats
+        .iter()
+        .filter(|s| s.slot.is_some())
+        .map(|seat| Slot {
+            curves: seat.curves.clone(),
+            kept_m3s: (0..undrawn)
+                .map(|layer| {
+                    let kept = |curve: &Option<usize>| {
+                        let sink = curve.and_then(|c| curves.sink(c));
+                        sink.map_or(f64::INFINITY, |sink| kept_m3s(question, layer, sink, most_m3s))
+                    };
+                    seat.curves.iter().map(kept).collect()
+                })
+                .collect(),
+        })
+        .collect()
+}
+
+/// Greatest flow at which a level keeps out of a layer, m3/s: a zone only grows with its flow.
+fn kept_m3s(question: &Question, layer: usize, (centre_m, opening): (f64, Opening), most_m3s: f64) -> f64 {
+    let column = &question.profile.column;
+    let draws = |flow_m3s: f64| {
+        zone(column, &Sink { centre_m, flow_m3s, opening }, 1.0).is_some_and(|zone| {
+            let mut checks = Vec::new();
+            limits::level(question.site, column, &zone, Of::Whole, &mut checks);
+            checks.iter().any(|c| c.item == layer && c.broken())
+        })
+    };
+    if !draws(most_m3s) {
+        return f64::INFINITY;
+    }
+    let (mut low, mut high) = (0.0, most_m3s);
+    for _ in 0..HALVINGS {
+        let middle = 0.5 * (low + high);
+        if draws(middle) {
+            high = middle;
+        } else {
+            low = middle;
+        }
+    }
+    low
+}
+
+/// What a rule of the whole is called and how a miss of it is told.
+struct Told {
+    rule: Rule,
+    of: Of,
+    item: usize,
+    bound: f64,
+    /// 1 where too much is a miss, -1 where too little is.
+    side: f64,
+}
+
+impl Told {
+    fn whole(rule: Rule, bound: f64) -> Self {
+        Self { rule, of: Of::Whole, item: 0, bound, side: 1.0 }
+    }
+
+    fn check(&self, miss: f64) -> Check {
+        let Self { rule, of, item, bound, side } = *self;
+        Check { rule, of, item, found: bound + side * miss, bound, room: -miss }
+    }
+}
+
+/// Rules of the whole mix that depend on which mix it is, each with how it is told. `shared` where several units draw
+/// through one level.
+fn whole_rules(question: &Question, shared: bool) -> (Vec<WholeRule>, Vec<Told>) {
+    let l = &question.site.limits;
+    let mut rules: Vec<(WholeRule, Told)> = Vec::new();
+    if let Some(most) = l.solids_max_mg_l {
+        rules.push((WholeRule::Solids(most), Told::whole(Rule::SolidsMax, most)));
+    }
+    for (i, share) in l.shares.iter().enumerate() {
+        let of = Of::Share(i);
+        if let Some(least) = share.min {
+            let told = Told { of, side: -1.0, ..Told::whole(Rule::ShareMin, least) };
+            rules.push((WholeRule::ShareMin(i, least), told));
+        }
+        if let Some(most) = share.max {
+            rules.push((WholeRule::ShareMax(i, most), Told { of, ..Told::whole(Rule::ShareMax, most) }));
+        }
+    }
+    let (per_hour, per_day) = limits::change_times(question.site);
+    let changes = [
+        (Rule::TemperatureChangePerHour, l.temperature_change_c_per_hour, per_hour),
+        (Rule::TemperatureChangePerDay, l.temperature_change_c_per_day, per_day),
+    ];
+    for (rule, rate, times) in changes {
+        if let (Some(from_c), Some(rate)) = (question.before.temperature_c, rate) {
+            let most_c = rate * times;
+            rules.push((WholeRule::TemperatureChange { from_c, most_c }, Told::whole(rule, most_c)));
+        }
+    }
+    if question.now.is_some() {
+        if let Some(most) = l.max_moves {
+            rules.push((WholeRule::Moves(most as f64), Told::whole(Rule::MaxMoves, most as f64)));
+        }
+        if let Some(most) = l.max_crew_hours {
+            rules.push((WholeRule::CrewHours(most), Told::whole(Rule::MaxCrewHours, most)));
+        }
+    }
+    if shared {
+        for item in 0..l.undrawn.len() {
+            let told = Told { item, ..Told::whole(Rule::Undrawn, 0.0) };
+            rules.push((WholeRule::Undrawn(item), told));
+        }
+    }
+    rules.into_iter().unzip()
+}
+
+/// Limits that the release asked for breaks, whatever the mix.
+fn hopeless(question: &Question) -> Vec<Check> {
+    let Question { site, profile, blocks, .. } = *question;
+    let mean = blocks.iter().map(|b| b.0 * b.1).sum();
+    let mut out: Vec<Check> = Vec::new();
+    let mut against = |flow_m3s: f64, of_a_day: bool| {
+        let before = Before { temperature_c: None, ..question.before };
+        let release = Whole { flow_m3s, before: Some(before), ..Whole::default() };
+        let mut checks = Vec::new();
+        limits::whole(site, profile.pool_m, &release, &mut checks);
+        out.extend(checks.into_iter().filter(|c| c.broken() && (c.rule == Rule::Drawdown) == of_a_day));
+    };
+    against(mean, true);
+    blocks.iter().for_each(|b| against(b.1, false));
+    out.sort_by(|a, b| a.rule.cmp(&b.rule).then(a.room.total_cmp(&b.room)));
+    out.dedup_by_key(|c| c.rule);
+    out
+}

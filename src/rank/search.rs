@@ -2,8 +2,9 @@
 //! the whole and put into its place in the order.
 //!
 //! Parts that share a level come first, one inside the other; the parts that stand alone are taken together
-//! beforehand, so that the innermost loop only adds two rows of numbers and judges the sum. What a part may not do
-//! on its own never enters: it is skipped with that as the proof.
+//! beforehand, so that the innermost loop only adds two rows of numbers and judges the sum. Two things are passed
+//! over, each with its proof: what a part may not do on its own never enters, and a block of mixes none of which
+//! can be the best of anything, because what they all together span is beaten by what a coarser search has found.
 //!
 //! Methods: `docs/methods.md`, section 10.
 
@@ -12,16 +13,21 @@ use std::sync::atomic::{AtomicBool, AtomicUsize, Ordering};
 
 use rayon::prelude::*;
 
-use super::choices::{Choice, Choices, Lanes, Levels, MOST_BLOCKS, Part, settled, together};
-use super::goal::{Day, Goal, TRADE_STEP_C};
+use super::arrange::{arranged, ways};
+use super::choices::{Choice, Choices, Levels, MOST_BLOCKS, Part};
+use super::found::{Found, higher, lower};
+use super::goal::Goal;
+use super::tail::{Block, Days, ROWS, Tail};
 
-/// Parts that stand alone are taken together while they make no more rows than this (choice: they stay in the
-/// nearest cache).
-const MOST_ROWS: usize = 60_000;
-/// Bins of the trade curve.
-const TRADE_BINS: usize = 400;
 /// A rule is kept when it is missed by less than this share of its bound: round-off.
 const ROUND_OFF: f64 = 1e-9;
+/// The coarser search takes at most this many steps (choice).
+const COARSE_STEPS: usize = 10;
+/// A coarser search is made when there are more mixes than this (choice).
+const WORTH_IT: u64 = 200_000;
+/// The choices of the first part are gone through in this many lots (choice): enough for many cores, few enough that
+/// each can keep its own findings.
+const LOTS: usize = 128;
 
 /// Told how much is done, 0 to 1, and asked whether to go on.
 pub type Progress<'a> = &'a (dyn Fn(f64) -> ControlFlow<()> + Sync);
@@ -52,153 +58,42 @@ pub(super) enum WholeRule {
 
 /// What the search needs.
 pub(super) struct Task<'a> {
-    pub(super) units: Vec<Choices>,
-    pub(super) levels: Levels<'a>,
+    pub(super) units: &'a [Choices],
+    pub(super) levels: &'a Levels<'a>,
     pub(super) goal: &'a Goal,
     pub(super) rules: &'a [WholeRule],
-    /// What leaves the dam whatever is set: sums as [`Lanes`] places them, and whether its oxygen is unknown.
-    pub(super) always: (Vec<f64>, bool),
+    /// Steps of the release.
+    pub(super) steps: usize,
     /// Number of ideas.
     pub(super) ideas: usize,
     pub(super) progress: Progress<'a>,
 }
 
-/// A value with the mix that has it.
-pub(super) type At = (f64, u64);
-
-/// Misses of one rule of the whole.
-#[derive(Debug, Clone, Copy)]
-pub(super) struct Missed {
-    /// Number of mixes.
-    pub(super) count: u64,
-    /// Smallest miss, in the rule's own unit, and the mix.
-    pub(super) nearest: At,
-}
-
-/// What the search found. Every field is the same whatever the number of threads.
-#[derive(Debug, Clone)]
-pub(super) struct Found {
-    /// Mixes held against every rule.
-    pub(super) judged: u64,
-    /// Mixes passed over because a level they share draws what is not to be drawn.
-    pub(super) skipped: u64,
-    /// Mixes allowed.
-    pub(super) allowed: u64,
-    /// Best key and number of each idea; greatest values where none is allowed.
-    pub(super) best: Vec<(u64, u64)>,
-    /// Coldest, warmest, least and most oxygen of allowed mixes.
-    pub(super) coldest: At,
-    pub(super) warmest: At,
-    pub(super) least_oxygen: At,
-    pub(super) most_oxygen: At,
-    /// Most oxygen in each bin of distance from the preferred temperature.
-    pub(super) trade: Vec<At>,
-    /// Misses of each rule of the whole.
-    pub(super) missed: Vec<Missed>,
-}
-
-impl Found {
-    fn nothing(ideas: usize, rules: usize) -> Self {
-        let none = (f64::INFINITY, u64::MAX);
-        Self {
-            judged: 0,
-            skipped: 0,
-            allowed: 0,
-            best: vec![(u64::MAX, u64::MAX); ideas],
-            coldest: none,
-            warmest: (f64::NEG_INFINITY, u64::MAX),
-            least_oxygen: none,
-            most_oxygen: (f64::NEG_INFINITY, u64::MAX),
-            trade: vec![(f64::NEG_INFINITY, u64::MAX); TRADE_BINS],
-            missed: vec![Missed { count: 0, nearest: none }; rules],
-        }
-    }
-
-    fn merge(mut self, other: &Self) -> Self {
-        self.judged += other.judged;
-        self.skipped += other.skipped;
-        self.allowed += other.allowed;
-        for (a, b) in self.best.iter_mut().zip(&other.best) {
-            *a = (*a).min(*b);
-        }
-        lower(&mut self.coldest, other.coldest);
-        higher(&mut self.warmest, other.warmest);
-        lower(&mut self.least_oxygen, other.least_oxygen);
-        higher(&mut self.most_oxygen, other.most_oxygen);
-        for (a, b) in self.trade.iter_mut().zip(&other.trade) {
-            higher(a, *b);
-        }
-        for (a, b) in self.missed.iter_mut().zip(&other.missed) {
-            a.count += b.count;
-            lower(&mut a.nearest, b.nearest);
-        }
-        self
-    }
-}
-
-/// Keeps the lower value; of equal ones the mix that comes first.
-#[inline]
-fn lower(kept: &mut At, new: At) {
-    if new.0 < kept.0 || (new.0 <= kept.0 && new.1 < kept.1) {
-        *kept = new;
-    }
-}
-
-/// Keeps the higher value; of equal ones the mix that comes first.
-#[inline]
-fn higher(kept: &mut At, new: At) {
-    if new.0 > kept.0 || (new.0 >= kept.0 && new.1 < kept.1) {
-        *kept = new;
-    }
-}
-
-/// The parts that stand alone, taken together: rows by the share they take, each lane a column of numbers.
-struct Tail {
-    /// First row of each share, and one past the last.
-    starts: Vec<usize>,
-    lanes: Vec<Vec<f64>>,
-    unknown: Vec<bool>,
-    idea: Vec<usize>,
-    number: Vec<u64>,
-}
-
-impl Tail {
-    fn new(choices: &Choices, lanes: Lanes) -> Self {
-        let rows = || choices.by_share.iter().flatten();
-        let mut starts = vec![0];
-        for at in &choices.by_share {
-            starts.push(starts.last().copied().unwrap_or(0) + at.len());
-        }
-        Self {
-            starts,
-            lanes: (0..lanes.count()).map(|l| rows().map(|c| c.lanes[l]).collect()).collect(),
-            unknown: rows().map(|c| c.unknown).collect(),
-            idea: rows().map(|c| c.idea).collect(),
-            number: rows().map(|c| c.number).collect(),
-        }
-    }
-}
-
-/// Number of ways lists fill up exactly `k` steps, for each `k`; it stops at the greatest number there is.
-pub(super) fn ways(counts: &[Vec<u64>], steps: usize) -> Vec<u64> {
-    let mut out = vec![0_u64; steps + 1];
-    out[0] = 1;
-    for list in counts {
-        let mut next = vec![0_u64; steps + 1];
-        for (k, &have) in out.iter().enumerate() {
-            for (j, &more) in list.iter().take(steps + 1 - k).enumerate() {
-                next[k + j] = next[k + j].saturating_add(have.saturating_mul(more));
-            }
-        }
-        out = next;
-    }
-    out
-}
-
 /// Judges every mix of a task. `None` when the caller stopped it.
-pub(super) fn search(task: Task) -> Option<Found> {
-    let (head, tail) = arranged(&task);
-    let steps = task.units.first().map_or(0, |u| u.by_share.len().saturating_sub(1));
+pub(super) fn search(task: &Task) -> Option<Found> {
+    let nothing = Found::nothing(task.ideas, task.rules.len());
+    let counts: Vec<Vec<u64>> = task.units.iter().map(Choices::counts).collect();
+    let mixes = ways(&counts, task.steps)[task.steps];
+    let coarse = (task.steps / COARSE_STEPS..task.steps)
+        .find(|every| *every > 1 && task.steps.is_multiple_of(*every))
+        .filter(|_| mixes > WORTH_IT && task.rules.is_empty());
+    let to_beat = match coarse {
+        None => nothing,
+        Some(every) => {
+            let thinned: Vec<Choices> = task.units.iter().map(|u| u.every(every)).collect();
+            // told nothing of how far it is: it is short
+            let quiet = |_: f64| (task.progress)(0.0);
+            walked(&Task { units: &thinned, progress: &quiet, ..*task }, &nothing)?.to_beat()
+        }
+    };
+    walked(task, &to_beat)
+}
+
+/// Goes through every mix of a task, some already found to beat.
+fn walked(task: &Task, to_beat: &Found) -> Option<Found> {
+    let steps = task.steps;
+    let undrawn = task.rules.iter().any(|r| matches!(r, WholeRule::Undrawn(_)));
+    let (head, tail) = arranged(task.units, steps, task.levels, undrawn);
     // how many mixes the rest of the head and the tail make of what is left
     let counts: Vec<Vec<u64>> = head.iter().map(Choices::counts).collect();
     let completions: Vec<Vec<u64>> = (0..=head.len())
@@ -207,102 +102,30 @@ pub(super) fn search(task: Task) -> Option<Found> {
             ways(&rest, steps)
         })
         .collect();
-    let lanes = task.levels.lanes;
-    let walk = Walk {
-        task: &task,
-        head: &head,
-        tail: Tail::new(&tail, lanes),
-        completions,
-        checks_undrawn: task.rules.iter().any(|r| matches!(r, WholeRule::Undrawn(_))),
-    };
-    let (done, stopped) = (AtomicUsize::new(0), AtomicBool::new(false));
+    let walk = Walk { task, head: &head, tail: Tail::new(&tail, task.levels.lanes), completions, undrawn };
     let first: Vec<(usize, &Choice)> =
         head[0].by_share.iter().enumerate().flat_map(|(k, at)| at.iter().map(move |c| (k, c))).collect();
-    let found = first
-        .par_iter()
-        .fold(
-            || Found::nothing(task.ideas, task.rules.len()),
-            |mut found, &(k, choice)| {
-                if stopped.load(Ordering::Relaxed) {
-                    return found;
-                }
-                walk.begin(k, choice, steps, &mut found);
-                let part = (done.fetch_add(1, Ordering::Relaxed) + 1) as f64 / first.len() as f64;
-                if (task.progress)(part).is_break() {
-                    stopped.store(true, Ordering::Relaxed);
-                }
-                found
-            },
-        )
-        .reduce(|| Found::nothing(task.ideas, task.rules.len()), |a, b| a.merge(&b));
+    let (done, stopped) = (AtomicUsize::new(0), AtomicBool::new(false));
+    let lot = |lot: usize| {
+        let mut found = to_beat.clone();
+        // in turn, so that lots are alike
+        for &(k, choice) in first.iter().skip(lot).step_by(LOTS) {
+            if stopped.load(Ordering::Relaxed) {
+                break;
+            }
+            walk.begin(k, choice, &mut found);
+            let part = (done.fetch_add(1, Ordering::Relaxed) + 1) as f64 / first.len() as f64;
+            if (task.progress)(part).is_break() {
+                stopped.store(true, Ordering::Relaxed);
+            }
+        }
+        found
+    };
+    let found = (0..LOTS.min(first.len()))
+        .into_par_iter()
+        .map(lot)
+        .reduce(|| to_beat.clone(), |a, b| a.merge(&b));
     (!stopped.load(Ordering::Relaxed)).then_some(found)
-}
-
-/// Which parts are taken one inside the other, and the rest taken together. Parts that share a level stand beside
-/// each other; where they make few pairs they too are taken together. The head is never empty.
-fn arranged(task: &Task) -> (Vec<Choices>, Choices) {
-    let steps = task.units.first().map_or(1, |u| u.by_share.len());
-    let mut nothing = Choices { by_share: vec![Vec::new(); steps], units: 0 };
-    nothing.by_share[0].push(Choice {
-        lanes: vec![0.0; task.levels.lanes.count()],
-        unknown: false,
-        idea: 0,
-        number: 0,
-        parts: Vec::new(),
-    });
-    let undrawn = task.rules.iter().any(|r| matches!(r, WholeRule::Undrawn(_)));
-    let mut head = Vec::new();
-    let mut alone = Vec::new();
-    for island in islands(&task.units) {
-        let shares = island.len() > 1;
-        let joined = island.iter().try_fold(nothing.clone(), |so_far, &unit| {
-            let fits = so_far.pairs(&task.units[unit]) <= MOST_ROWS;
-            (fits && !(shares && undrawn)).then(|| together(&so_far, &task.units[unit]))
-        });
-        match joined {
-            Some(joined) => alone.push(settled(joined, &task.levels)),
-            None => head.extend(island.into_iter().map(|unit| task.units[unit].clone())),
-        }
-    }
-    // the smallest first, so that as many as can be fit
-    alone.sort_by_key(|c| (c.len(), c.units));
-    let mut tail = nothing.clone();
-    for choices in alone {
-        if tail.pairs(&choices) <= MOST_ROWS {
-            tail = together(&tail, &choices);
-        } else {
-            head.push(choices);
-        }
-    }
-    if head.is_empty() {
-        head.push(nothing);
-    }
-    (head, tail)
-}
-
-/// Units that share levels, directly or through others, in the order of the units.
-fn islands(units: &[Choices]) -> Vec<Vec<usize>> {
-    let slots: Vec<Vec<usize>> = units
-        .iter()
-        .map(|u| {
-            let mut slots: Vec<usize> =
-                u.by_share.iter().flatten().flat_map(|c| c.parts.iter().map(|p| p.slot)).collect();
-            slots.sort_unstable();
-            slots.dedup();
-            slots
-        })
-        .collect();
-    let mut islands: Vec<Vec<usize>> = Vec::new();
-    for unit in 0..units.len() {
-        let touches = |other: &usize| slots[*other].iter().any(|s| slots[unit].contains(s));
-        let (linked, apart): (Vec<_>, Vec<_>) = islands.into_iter().partition(|i| i.iter().any(touches));
-        islands = apart;
-        let mut joined: Vec<usize> = linked.into_iter().flatten().chain([unit]).collect();
-        joined.sort_unstable();
-        islands.push(joined);
-    }
-    islands.sort();
-    islands
 }
 
 /// Sums of the head of a mix.
@@ -320,53 +143,52 @@ struct Walk<'a> {
     head: &'a [Choices],
     tail: Tail,
     completions: Vec<Vec<u64>>,
-    checks_undrawn: bool,
+    undrawn: bool,
 }
 
 impl<'a> Walk<'a> {
-    fn begin(&self, share: usize, choice: &'a Choice, steps: usize, found: &mut Found) {
-        let (always, unknown) = &self.task.always;
-        let lanes = always.len();
+    fn begin(&self, share: usize, choice: &'a Choice, found: &mut Found) {
+        let lanes = self.task.levels.lanes.count();
         // one set of sums for each depth, made once
         let mut stack: Vec<Sums<'a>> = (0..=self.head.len() + 1)
-            .map(|_| Sums { lanes: vec![0.0; lanes], unknown: *unknown, idea: 0, number: 0, parts: Vec::new() })
+            .map(|_| Sums { lanes: vec![0.0; lanes], unknown: false, idea: 0, number: 0, parts: Vec::new() })
             .collect();
-        stack[0].lanes.copy_from_slice(always);
         put(&mut stack, 0, choice);
-        self.deeper(1, steps - share, &mut stack, found);
+        self.deeper(1, self.task.steps - share, &mut stack, &mut Days::default(), found);
     }
 
     /// Goes through the choices of the head from `depth` on, `left` steps of the release still to be given.
-    fn deeper(&self, depth: usize, left: usize, stack: &mut [Sums<'a>], found: &mut Found) {
+    fn deeper(&self, depth: usize, left: usize, stack: &mut [Sums<'a>], days: &mut Days, found: &mut Found) {
         if self.completions[depth][left] == 0 {
             return;
         }
         let Some(choices) = self.head.get(depth) else {
-            return self.complete(depth, left, stack, found);
+            return self.complete(left, &mut stack[depth], days, found);
         };
         for (share, at) in choices.by_share.iter().take(left + 1).enumerate() {
             for choice in at {
                 put(stack, depth, choice);
-                self.deeper(depth + 1, left - share, stack, found);
+                self.deeper(depth + 1, left - share, stack, days, found);
             }
         }
     }
 
     /// The head is complete: what its parts share is made good, and every row of the tail judged.
-    fn complete(&self, depth: usize, left: usize, stack: &mut [Sums<'a>], found: &mut Found) {
-        let (below, above) = stack.split_at_mut(depth + 1);
-        let (head, sums) = (&below[depth], &mut above[0]);
-        if self.checks_undrawn && self.draws_undrawn(head, self.completions[depth][left], found) {
-            return;
+    fn complete(&self, left: usize, head: &mut Sums<'a>, days: &mut Days, found: &mut Found) {
+        if self.undrawn {
+            let completions = self.completions[self.head.len()][left];
+            if self.draws_undrawn(head, completions, found) {
+                return;
+            }
         }
-        sums.lanes.copy_from_slice(&head.lanes);
-        sums.unknown = head.unknown | self.task.levels.join(&head.parts, &mut sums.lanes);
-        (sums.idea, sums.number) = (head.idea, head.number);
-        match self.task.levels.lanes.blocks {
-            1 => self.judge::<1>(left, sums, found),
-            2 => self.judge::<2>(left, sums, found),
-            3 => self.judge::<3>(left, sums, found),
-            _ => self.judge::<MOST_BLOCKS>(left, sums, found),
+        head.unknown |= self.task.levels.join(&head.parts, &mut head.lanes);
+        for block in &self.tail.by_share[left] {
+            match self.task.levels.lanes.blocks {
+                1 => self.judge::<1>(block, head, days, found),
+                2 => self.judge::<2>(block, head, days, found),
+                3 => self.judge::<3>(block, head, days, found),
+                _ => self.judge::<MOST_BLOCKS>(block, head, days, found),
+            }
         }
     }
 
@@ -395,77 +217,87 @@ impl<'a> Walk<'a> {
             }
         }
         if draws {
-            found.skipped += completions;
+            found.undrawn += completions;
         }
         draws
     }
 
-    /// Judges the head with every row of the tail that takes what is left.
-    fn judge<const B: usize>(&self, left: usize, head: &Sums, found: &mut Found) {
+    /// Judges the head with every row of a block: first, whether any of them can be the best of anything; then what
+    /// can be computed side by side; then what each mix is the best of.
+    #[inline]
+    fn judge<const B: usize>(&self, block: &Block, head: &Sums, days: &mut Days, found: &mut Found) {
         let Task { levels, goal, rules, .. } = self.task;
-        let lanes = levels.lanes;
-        let (from, to) = (self.tail.starts[left], self.tail.starts[left + 1]);
-        let column = |lane: usize| &self.tail.lanes[lane][from..to];
-        let flow: [&[f64]; B] = std::array::from_fn(|b| column(3 * b));
-        let heat: [&[f64]; B] = std::array::from_fn(|b| column(3 * b + 1));
-        let oxygen: [&[f64]; B] = std::array::from_fn(|b| column(3 * b + 2));
-        let [cold, cost, hours] = [lanes.cold(), lanes.cost(), lanes.hours()].map(column);
-        let (idea, number) = (&self.tail.idea[from..to], &self.tail.number[from..to]);
-        let unknown = &self.tail.unknown[from..to];
         let statistics = if B == 1 { 1 } else { 3 };
-        let h = &head.lanes;
-        found.judged += (to - from) as u64;
-        for i in 0..to - from {
-            let mut day = Day {
-                temperature_c: [0.0, f64::NEG_INFINITY, f64::INFINITY],
-                oxygen_mg_l: [0.0, f64::INFINITY],
-                oxygen_known: !(head.unknown || unknown[i]),
-                cold_share: 0.0,
-                cost: h[lanes.cost()] + cost[i],
-                hours: h[lanes.hours()] + hours[i],
-            };
-            let mut mean_flow = 0.0;
-            for b in 0..B {
-                let flow = h[3 * b] + flow[b][i];
-                let per = 1.0 / flow;
-                let t = (h[3 * b + 1] + heat[b][i]) * per;
-                let o = (h[3 * b + 2] + oxygen[b][i]) * per;
-                let weight = if B == 1 { 1.0 } else { levels.weights[b] };
-                mean_flow += weight * flow;
-                day.temperature_c[0] += weight * t;
-                day.oxygen_mg_l[0] += weight * o;
-                if B > 1 {
-                    day.temperature_c[1] = day.temperature_c[1].max(t);
-                    day.temperature_c[2] = day.temperature_c[2].min(t);
-                }
-                day.oxygen_mg_l[1] = day.oxygen_mg_l[1].min(o);
-            }
-            day.cold_share = (h[lanes.cold()] + cold[i]) / mean_flow;
-            let number = head.number + number[i];
-            if !rules.is_empty() && !self.keeps(head, from + i, number, &day, found) {
+        let unknown = head.unknown || block.any_unknown();
+        if rules.is_empty() && !unknown && self.beaten::<B>(block, head, found) {
+            found.beaten += block.rows as u64;
+            return;
+        }
+        found.judged += block.rows as u64;
+        days.fill::<B>(block, &head.lanes, levels);
+        let (mut far, mut key) = ([0.0; ROWS], [0.0; ROWS]);
+        for i in 0..ROWS {
+            let day = days.day(i);
+            far[i] = goal.distance_c(&day, statistics);
+            key[i] = goal.key(&day, statistics, far[i]);
+        }
+        for i in 0..block.rows {
+            let number = head.number + block.number[i];
+            let (t, o) = (days.temperature_c[0][i], days.oxygen_mg_l[0][i]);
+            if !rules.is_empty() && !self.keeps(head, block, i, number, t, found) {
+                found.refused += 1;
                 continue;
             }
-            found.allowed += 1;
-            let distance = goal.distance_c(&day, statistics);
-            let key = goal.key(&day, statistics, distance);
-            let best = &mut found.best[head.idea + idea[i]];
-            if (key, number) < *best {
-                *best = (key, number);
+            let known = !(head.unknown || block.unknown[i]);
+            if !known {
+                key[i] = goal.key_unknown(&days.day(i), statistics, far[i]);
             }
-            lower(&mut found.coldest, (day.temperature_c[0], number));
-            higher(&mut found.warmest, (day.temperature_c[0], number));
-            if day.oxygen_known {
-                lower(&mut found.least_oxygen, (day.oxygen_mg_l[0], number));
-                higher(&mut found.most_oxygen, (day.oxygen_mg_l[0], number));
-                higher(&mut found.trade[trade_bin(distance)], (day.oxygen_mg_l[0], number));
+            lower(&mut found.best[head.idea + block.idea[i]], (key[i], number));
+            lower(&mut found.coldest, (t, number));
+            higher(&mut found.warmest, (t, number));
+            if known {
+                lower(&mut found.least_oxygen, (o, number));
+                higher(&mut found.most_oxygen, (o, number));
+                found.trade(far[i], (o, number));
             }
         }
     }
 
+    /// Whether no row of a block, with this head, can be the best of its idea, an end of what is attainable, or on
+    /// the trade curve: what the rows span together is behind what is already found, by more than a tie.
+    #[inline]
+    fn beaten<const B: usize>(&self, block: &Block, head: &Sums, found: &Found) -> bool {
+        let goal = self.task.goal;
+        let statistics = if B == 1 { 1 } else { 3 };
+        let (span, least_mg_l) = block.span::<B>(&head.lanes, self.task.levels);
+        let [coldest, warmest] = span.temperature_c[0];
+        let inside = coldest > found.coldest.0
+            && warmest < found.warmest.0
+            && least_mg_l > found.least_oxygen.0
+            && span.oxygen_mg_l[0] < found.most_oxygen.0;
+        if !inside {
+            return false;
+        }
+        let far = goal.distance_c(&span, statistics);
+        if !found.beaten_in_both(far, span.oxygen_mg_l[0]) {
+            return false;
+        }
+        let key = goal.key(&span, statistics, far);
+        block.ideas.iter().all(|idea| key > found.best[head.idea + idea].0)
+    }
+
     /// Whether a mix keeps the rules of the whole; each one it misses is counted.
-    fn keeps(&self, head: &Sums, row: usize, number: u64, day: &Day, found: &mut Found) -> bool {
+    fn keeps(
+        &self,
+        head: &Sums,
+        block: &Block,
+        row: usize,
+        number: u64,
+        temperature_c: f64,
+        found: &mut Found,
+    ) -> bool {
         let lanes = self.task.levels.lanes;
-        let sum = |lane: usize| head.lanes[lane] + self.tail.lanes[lane][row];
+        let sum = |lane: usize| head.lanes[lane] + block.lane(lane, row);
         let blocks = 0..lanes.blocks;
         let share = |rule: usize, b: usize| sum(lanes.share(rule, b)) / sum(3 * b);
         let mut keeps = true;
@@ -485,10 +317,10 @@ impl<'a> Walk<'a> {
                     (worst - most, most)
                 }
                 WholeRule::TemperatureChange { from_c, most_c } => {
-                    ((day.temperature_c[0] - from_c).abs() - most_c, most_c)
+                    ((temperature_c - from_c).abs() - most_c, most_c)
                 }
                 WholeRule::Moves(most) => (sum(lanes.moves()) - most, most),
-                WholeRule::CrewHours(most) => (day.hours - most, most),
+                WholeRule::CrewHours(most) => (sum(lanes.hours()) - most, most),
                 WholeRule::Undrawn(_) => continue,
             };
             if miss > ROUND_OFF * (1.0 + bound) {
@@ -499,17 +331,6 @@ impl<'a> Walk<'a> {
         }
         keeps
     }
-}
-
-/// Bin of the trade curve that holds a distance from the preferred temperature, C; the last holds all beyond.
-#[inline]
-#[expect(
-    clippy::cast_possible_truncation,
-    clippy::cast_sign_loss,
-    reason = "the cast saturates and drops the part below one"
-)]
-fn trade_bin(distance_c: f64) -> usize {
-    ((distance_c * (1.0 / TRADE_STEP_C)) as usize).min(TRADE_BINS - 1)
 }
 
 /// Sums at `depth + 1` are those at `depth` with a choice put on.

@@ -19,7 +19,10 @@ pub use limits::{
 };
 pub use outlet::{Kind, Leakage, OpenPart, Opens, Outlet, Position, SAME_OPENING, Shape};
 pub use pool::{Pool, RawRow, WidthSource};
-pub use raw::{Raw, RawOutlet, RawPool, RawTarget, RawWell};
+pub use raw::{
+    Raw, RawAvoid, RawLimits, RawNow, RawOutage, RawOutlet, RawPool, RawReserved, RawShare, RawTarget,
+    RawUndrawn, RawWell,
+};
 
 /// Where the dam stands.
 #[derive(Debug, Clone, Copy, Default, PartialEq)]

@@ -3,7 +3,8 @@
 use crate::units::Folder;
 
 use super::{
-    BandInputs, CastChecks, Chemistry, Leakage, ListedCast, Opens, Position, RawRow, SetNow, WidthSource,
+    BandInputs, Bins, Block, CastChecks, Chemistry, Crew, GenerationLost, Leakage, ListedCast, Opens,
+    Position, RawRow, WidthSource,
 };
 
 /// Pool as read.
@@ -30,8 +31,12 @@ pub struct RawWell {
     pub max_open: Option<f64>,
     /// Most head across the structure, m.
     pub max_head_loss_m: Option<f64>,
+    /// Least flow when it flows, m3/s.
+    pub min_flow_m3s: Option<f64>,
     /// Most flow, m3/s.
     pub max_flow_m3s: Option<f64>,
+    /// Area of the shaft in plan, m2.
+    pub plan_area_m2: Option<f64>,
 }
 
 /// Outlet as read.
@@ -73,6 +78,125 @@ pub struct RawOutlet {
     pub flow_max_m3s: Option<f64>,
     /// Leak when shut.
     pub leakage: Option<Leakage>,
+    /// Pool elevations at which it may be used, m.
+    pub pool_window_m: Option<(f64, f64)>,
+    /// Openings and flows to avoid.
+    pub avoid: Vec<RawAvoid>,
+    /// Most velocity through the open part, m/s.
+    pub max_entrance_m_s: Option<f64>,
+    /// Whether it may be moved while water passes.
+    pub moves_under_flow: Option<bool>,
+    /// What a move takes.
+    pub crew: Crew,
+    /// Power not made by water that passes here.
+    pub generation_lost: Option<GenerationLost>,
+    /// Its position is not confirmed.
+    pub uncertain: bool,
+}
+
+/// A stretch to avoid as read; one of the two is to be given.
+#[derive(Debug, Clone, Default, PartialEq)]
+pub struct RawAvoid {
+    /// Openings, 0 to 1.
+    pub openings: Option<(f64, f64)>,
+    /// Flows, m3/s.
+    pub flows_m3s: Option<(f64, f64)>,
+    /// Why.
+    pub reason: String,
+}
+
+/// Outage as read.
+#[derive(Debug, Clone, Default, PartialEq)]
+pub struct RawOutage {
+    /// Outlet.
+    pub outlet: Option<String>,
+    /// First day, `YYYY-MM-DD`.
+    pub from: Option<String>,
+    /// Last day, `YYYY-MM-DD`.
+    pub to: Option<String>,
+    /// Why.
+    pub reason: String,
+}
+
+/// Share rule as read.
+#[derive(Debug, Clone, Default, PartialEq)]
+pub struct RawShare {
+    /// Name.
+    pub name: Option<String>,
+    /// Outlets.
+    pub outlets: Vec<String>,
+    /// Least share of the release, 0 to 1.
+    pub min: Option<f64>,
+    /// Greatest share of the release, 0 to 1.
+    pub max: Option<f64>,
+}
+
+/// Reserved flow as read.
+#[derive(Debug, Clone, Default, PartialEq)]
+pub struct RawReserved {
+    /// Outlet.
+    pub outlet: Option<String>,
+    /// Flow, m3/s.
+    pub flow_m3s: Option<f64>,
+    /// What for.
+    pub reason: String,
+}
+
+/// Layer not to be drawn as read; one of the three forms is to be given.
+#[derive(Debug, Clone, Default, PartialEq)]
+pub struct RawUndrawn {
+    /// Lower elevation, m.
+    pub from_m: Option<f64>,
+    /// Upper elevation, m.
+    pub to_m: Option<f64>,
+    /// Two depths, m.
+    pub depths_m: Option<(f64, f64)>,
+    /// Oxygen, mg/L.
+    pub oxygen_below_mg_l: Option<f64>,
+    /// Why.
+    pub reason: String,
+}
+
+/// Limits of the site as a whole as read.
+#[derive(Debug, Clone, Default, PartialEq)]
+pub struct RawLimits {
+    /// Outlets out of use.
+    pub outages: Vec<RawOutage>,
+    /// Shares of the release.
+    pub shares: Vec<RawShare>,
+    /// Flows reserved.
+    pub reserved: Vec<RawReserved>,
+    /// Layers not to be drawn.
+    pub undrawn: Vec<RawUndrawn>,
+    /// Most change of the total release in an hour, m3/s.
+    pub flow_change_m3s_per_hour: Option<f64>,
+    /// Most change of the total release in a day, m3/s.
+    pub flow_change_m3s_per_day: Option<f64>,
+    /// Most change of the release temperature in an hour, C.
+    pub temperature_change_c_per_hour: Option<f64>,
+    /// Most change of the release temperature in a day, C.
+    pub temperature_change_c_per_day: Option<f64>,
+    /// Hours over which a change is made.
+    pub change_hours: Option<f64>,
+    /// Most fall of the pool in a day, m.
+    pub drawdown_m_per_day: Option<f64>,
+    /// Most solids in the release, mg/L.
+    pub solids_max_mg_l: Option<f64>,
+    /// Most moves in one change.
+    pub max_moves: Option<usize>,
+    /// Most crew hours in one change.
+    pub max_crew_hours: Option<f64>,
+}
+
+/// What is set now at an outlet or a well, as read.
+#[derive(Debug, Clone, PartialEq)]
+pub enum RawNow {
+    /// A flow, m3/s.
+    Flow(f64),
+    /// An opening, 0 to 1.
+    Opening(f64),
+    /// A position by its name.
+    Position(String),
 }
 
 /// Target as read.
@@ -129,8 +253,18 @@ pub struct Raw {
     pub release_min_m3s: Option<f64>,
     /// Most total release, m3/s.
     pub release_max_m3s: Option<f64>,
-    /// What is set now.
-    pub now: Vec<(String, SetNow)>,
+    /// Total release wanted now, m3/s.
+    pub release_wanted_m3s: Option<f64>,
+    /// Limits of the site as a whole.
+    pub limits: RawLimits,
+    /// Parts of the day.
+    pub blocks: Vec<Block>,
+    /// Inflow, m3/s.
+    pub inflow_m3s: Option<f64>,
+    /// Differences too small to order by.
+    pub bins: Bins,
+    /// What is set now, by the name of an outlet or a well.
+    pub now: Vec<(String, RawNow)>,
     /// Targets.
     pub targets: Vec<RawTarget>,
     /// Cold-water thresholds, C.

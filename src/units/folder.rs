@@ -28,7 +28,8 @@ impl Default for Folder {
 
 impl Folder {
     /// Takes the unit a word names for one dimension. Temperature and its difference are set together;
-    /// concentrations and percentages have one unit only.
+    /// a velocity is that length in a
+    /// second; concentrations and percentages have one unit only.
     ///
     /// # Errors
     /// The word names no unit of that dimension.
@@ -42,7 +43,7 @@ impl Folder {
             Dimension::Temperature | Dimension::TemperatureDifference => {
                 self.temperature = Unit::parse(word, Dimension::Temperature)?;
             }
-            Dimension::Concentration | Dimension::Percent => {}
+            Dimension::Velocity | Dimension::Concentration | Dimension::Percent => {}
         }
         Ok(())
     }
@@ -59,6 +60,7 @@ impl Folder {
             Dimension::Area => self.area,
             Dimension::Volume => self.volume,
             Dimension::Flow => self.flow,
+            Dimension::Velocity => self.system().unit(dimension),
             Dimension::Temperature => self.temperature,
             Dimension::TemperatureDifference => self.temperature.of_difference(),
             Dimension::Concentration => Unit::MilligramPerLitre,

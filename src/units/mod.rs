@@ -1,6 +1,6 @@
 //! Quantities and customary units.
 //!
-//! Inside the program every number is SI (m, m2, m3, m3/s, C, mg/L) and a plain `f64`; customary units
+//! Inside the program every number is SI (m, m2, m3, m3/s, m/s, C, mg/L) and a plain `f64`; customary units
 //! exist only where text comes in ([`parse`], [`Folder`]) and goes out ([`System`], [`show`]). A sentence
 //! carries its quantities unshown ([`say`]) until its reader's system is known ([`in_system`]).
 

@@ -15,11 +15,12 @@ const OPEN: char = '\u{2}';
 const CLOSE: char = '\u{3}';
 
 /// The letter that names a dimension inside a mark.
-const LETTERS: [(char, Dimension); 6] = [
+const LETTERS: [(char, Dimension); 7] = [
     ('L', Dimension::Length),
     ('A', Dimension::Area),
     ('V', Dimension::Volume),
     ('Q', Dimension::Flow),
+    ('U', Dimension::Velocity),
     ('T', Dimension::Temperature),
     ('D', Dimension::TemperatureDifference),
 ];
@@ -51,6 +52,11 @@ pub fn m3(value_m3: f64, decimals: u8) -> Said {
 /// A flow, m3/s.
 pub fn m3s(value_m3s: f64, decimals: u8) -> Said {
     Said::new('Q', value_m3s, decimals)
+}
+
+/// A velocity, m/s.
+pub fn m_s(value_m_s: f64, decimals: u8) -> Said {
+    Said::new('U', value_m_s, decimals)
 }
 
 /// A temperature on its scale, C.
@@ -103,7 +109,7 @@ impl Said {
     fn decimals_in(self, dimension: Dimension, system: System) -> u8 {
         match (system, dimension) {
             (System::Si, _) => self.decimals,
-            (System::Us, Dimension::Length) => self.decimals.saturating_sub(1),
+            (System::Us, Dimension::Length | Dimension::Velocity) => self.decimals.saturating_sub(1),
             (System::Us, Dimension::Flow) => self.decimals.saturating_sub(2),
             // a small pool would read 0 acre
             (System::Us, Dimension::Area | Dimension::Volume) => {
@@ -199,19 +205,23 @@ mod tests {
     #[test]
     fn scenario_one_sentence_in_both_systems() {
         let text = format!(
-            "{} {} {} {} {} {}",
+            "{} {} {} {} {} {} {}",
             m(60.0, 2),
             m2(2.0e6, 0),
             m3(2.44e8, 0),
             m3s(35.39605824, 2),
+            m_s(1.2, 2),
             c(14.5, 2),
             dc(1.0, 2)
         );
         assert_eq!(
             in_system(&text, System::Si),
-            "60.00 m 2,000,000 m2 244,000,000 m3 35.40 m3/s 14.50 C 1.00 C"
+            "60.00 m 2,000,000 m2 244,000,000 m3 35.40 m3/s 1.20 m/s 14.50 C 1.00 C"
         );
-        assert_eq!(in_system(&text, System::Us), "196.9 ft 494 acre 197,814 acre-ft 1,250 cfs 58.1 F 1.8 F");
+        assert_eq!(
+            in_system(&text, System::Us),
+            "196.9 ft 494 acre 197,814 acre-ft 1,250 cfs 3.9 ft/s 58.1 F 1.8 F"
+        );
         let small = format!("{} {} {}", m2(1000.0, 0), m(0.5, 0), c(9.0, 0));
         assert_eq!(in_system(&small, System::Us), "0.25 acre 2 ft 48 F");
     }

@@ -5,9 +5,9 @@ use super::unit::{Dimension, Unit};
 /// The units on screens and in reports; data for programs stays SI.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Default)]
 pub enum System {
-    /// ft, acre, acre-ft, cfs, F.
+    /// ft, acre, acre-ft, cfs, ft/s, F.
     Us,
-    /// m, m2, m3, m3/s, C.
+    /// m, m2, m3, m3/s, m/s, C.
     #[default]
     Si,
 }
@@ -24,6 +24,8 @@ impl System {
             (Dimension::Volume, Self::Si) => Unit::CubicMetre,
             (Dimension::Flow, Self::Us) => Unit::CubicFootPerSecond,
             (Dimension::Flow, Self::Si) => Unit::CubicMetrePerSecond,
+            (Dimension::Velocity, Self::Us) => Unit::FootPerSecond,
+            (Dimension::Velocity, Self::Si) => Unit::MetrePerSecond,
             (Dimension::Temperature, Self::Us) => Unit::Fahrenheit,
             (Dimension::Temperature, Self::Si) => Unit::Celsius,
             (Dimension::TemperatureDifference, Self::Us) => Unit::FahrenheitDifference,

@@ -177,6 +177,10 @@ fn scenario_numbers_with_and_without_units() {
     }
     let read = |folder: &Folder, text, dimension| folder.parse(text, dimension).unwrap();
     assert_relative_eq!(read(&metric, "1250cfs", Dimension::Flow), 35.39605824, max_relative = 1e-14);
+    // the unit of a bare velocity is the length's in a second
+    assert_relative_eq!(read(&customary, "4", Dimension::Velocity), 1.2192, max_relative = 1e-14);
+    assert_relative_eq!(read(&metric, "4 fps", Dimension::Velocity), 1.2192, max_relative = 1e-14);
+    assert_relative_eq!(read(&metric, "1.2", Dimension::Velocity), 1.2);
     assert_relative_eq!(read(&customary, "1250", Dimension::Flow), 35.39605824, max_relative = 1e-14);
     assert_relative_eq!(read(&metric, "58 F", Dimension::Temperature), 26.0 / 1.8, max_relative = 1e-14);
     assert_relative_eq!(read(&customary, "58", Dimension::Temperature), 26.0 / 1.8, max_relative = 1e-14);

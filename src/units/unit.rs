@@ -23,6 +23,8 @@ pub enum Dimension {
     Volume,
     /// Flow of water; m3/s.
     Flow,
+    /// Speed of water; m/s.
+    Velocity,
     /// A temperature on its scale; C.
     Temperature,
     /// A step or spread of temperature, without the offset of the scale; C.
@@ -47,7 +49,7 @@ impl Dimension {
             Self::Area => 1e12,
             Self::Volume => 1e15,
             Self::Flow => 1e7,
-            Self::Temperature => 1e3,
+            Self::Velocity | Self::Temperature => 1e3,
             Self::TemperatureDifference => 1e2,
             Self::Concentration => 1e6,
             Self::Percent => 1e4,
@@ -72,6 +74,7 @@ impl fmt::Display for Dimension {
             Self::Area => "area",
             Self::Volume => "volume",
             Self::Flow => "flow",
+            Self::Velocity => "velocity",
             Self::Temperature => "temperature",
             Self::TemperatureDifference => "temperature difference",
             Self::Concentration => "concentration",
@@ -135,6 +138,8 @@ table! {
     ThousandCubicFeetPerSecond: Flow, "kcfs", [], 1e3 * FOOT_M * FOOT_M * FOOT_M, 0.0;
     MegalitrePerDay: Flow, "ML/d", ["ML/day"], 1e3 / DAY_S, 0.0;
     MillionGallonsPerDay: Flow, "mgd", [], 1e6 * US_GALLON_M3 / DAY_S, 0.0;
+    MetrePerSecond: Velocity, "m/s", [], 1.0, 0.0;
+    FootPerSecond: Velocity, "ft/s", ["fps"], FOOT_M, 0.0;
     Celsius: Temperature, "C", ["degC", "deg C", "°C", "° C", "Celsius"], 1.0, 0.0;
     Fahrenheit: Temperature, "F", ["degF", "deg F", "°F", "° F", "Fahrenheit"], 5.0 / 9.0, 32.0;
     CelsiusDifference: TemperatureDifference, "C",

@@ -211,6 +211,7 @@ fn put(into: &mut Value, path: &str, value: &Value) {
 const BARE: &str = "
 name: Bare
 units: {}
+wells: [ { name: W, conduit: 1 } ]
 pool: { bed: 0, full: 10, table: [[0, 0], [10, 1000]] }
 outlets: [ { name: A, centre: 3, height: 1, width: 1, positions: [ { name: open } ] } ]
 targets: [ { name: t, high: 14 } ]

@@ -7,7 +7,9 @@ use std::path::Path;
 use gatemix::files::site::site;
 use gatemix::problem::Weight;
 
-const SOUND: &str = r#"name: Test Dam (invented)
+use super::limits;
+
+pub(super) const SOUND: &str = r#"name: Test Dam (invented)
 units: { length: m, area: m2, volume: m3, flow: m3/s, temperature: C }
 datum: local
 utc_offset: "-07:00"
@@ -21,14 +23,32 @@ pool:
     - [40, 5.0e6, 9.1e7, 200]
     - [62, 9.0e6, 2.45e8, 300]
 wells:
-  - { name: North, conduit: 2, max_open: 2, max_head_loss: 1.5, max_flow: 90 }
+  - { name: North, conduit: 2, max_open: 2, max_head_loss: 1.5, min_flow: 3, max_flow: 90, plan_area: 60 }
 outlets:
-  - { name: N1, well: North, centre: 45, height: 3, width: 4, angle: 180, loss: 1.5, positions: [0, 50, 100], min_submergence: 4, flow: { min: 2, max: 80 } }
+  - { name: N1, well: North, centre: 45, height: 3, width: 4, angle: 180, loss: 1.5, positions: [0, 50, 100], min_submergence: 4, flow: { min: 2, max: 80 }, pool_window: [50, 61], avoid: [ { open: [60, 90] } ], max_entrance_velocity: 1.3, moves_under_flow: false, crew: { hours: 3, lead_days: 7, cost: 1.5 }, uncertain: true }
   - { name: N2, well: North, centre: 30, height: 3, width: 4, loss: 1.5, leakage: { flow: 1, head: 2, range: [0.5, 2] } }
-  - { name: Cone, centre: 12, diameter: 1.8, discharge: 0.75, opens: down }
+  - { name: Cone, centre: 12, diameter: 1.8, discharge: 0.75, opens: down, avoid: [ { flow: [5, 12], reason: rough running } ], generation_lost: { flow: 10, power: 3.2 } }
   - { name: Crest, kind: crest, gated: true, centre: 58, width: 20, rating: [[0, 0], [2, 100]] }
-release: { min: 15, max: 120 }
-now: { N1: 50% }
+  - { name: Leaves, kind: crest, gated: true, centre: 50, width: 6, positions: [ { name: two leaves, crest: 45 }, { name: 3 leaves, crest: 50 } ] }
+release: { min: 15, max: 120, wanted: 40 }
+now: { N1: 50%, North: 20, Leaves: two leaves }
+inflow: 25
+blocks: [ { name: peak, hours: 6, flow: 60 }, { name: off-peak, hours: 18, flow: 20 } ]
+bins: { temperature: 0.4, oxygen: 0.3, cold_water: 20 }
+limits:
+  outages: [ { outlet: N2, from: 2026-07-01, to: 2026-08-15, reason: rack }, { outlet: Cone, from: 2026-09-01 } ]
+  shares: [ { name: upper, outlets: [N1, N2], min: 40, max: 90 }, { name: low, outlets: [Cone], max: 30 } ]
+  reserved: [ { outlet: Cone, flow: 1.1, reason: hatchery }, { outlet: N2, flow: 4 } ]
+  undrawn: [ { from: 0, to: 8.5, reason: sulphide }, { depth: [0, 1.5] }, { oxygen_below: 2.5 } ]
+  max_flow_change_per_hour: 10.1
+  max_flow_change_per_day: 40.1
+  max_temperature_change_per_hour: 1.1
+  max_temperature_change_per_day: 2.1
+  change_hours: 3.1
+  max_drawdown_per_day: 0.31
+  solids_max: 500.1
+  max_moves: 4
+  max_crew_hours: 8.1
 targets:
   - { name: holding, from: 05-01, to: 09-15, statistic: daily_mean, low: 9, preferred: 12, high: 14, buffer: 0.2, oxygen_min: 7, point: dam }
 cold_water: [12]
@@ -38,7 +58,7 @@ band: { members: 200, seed: 1, zone: [0.7, 1.15], cast: 0.2 }
 "#;
 
 /// What is changed, into what, and what is then said: kind, path, words.
-type Case = (&'static str, &'static str, &'static str, &'static str, &'static str);
+pub(super) type Case = (&'static str, &'static str, &'static str, &'static str, &'static str);
 
 const REFUSED: &[Case] = &[
     ("datum: local", "datum: \" \"", "datum", "datum", "no name"),
@@ -63,9 +83,9 @@ const REFUSED: &[Case] = &[
     ("conduit: 2,", "conduit: 200,", "outside-pool", "wells[0].conduit", "outside"),
     ("max_open: 2", "max_open: 1.5", "max-open", "wells[0].max_open", "count gates"),
     ("max_head_loss: 1.5", "max_head_loss: 0", "not-positive", "wells[0].max_head_loss", "above zero"),
-    ("name: Cone", "name: North", "name-twice", "outlets[2].name", "already used by wells[0]"),
-    ("name: Cone", "name: N1", "name-twice", "outlets[2].name", "already used by outlets[0]"),
-    ("name: Cone", "name: \"A=B\"", "name", "outlets[2].name", "cannot name an outlet"),
+    ("name: Crest", "name: North", "name-twice", "outlets[3].name", "already used by wells[0]"),
+    ("name: Crest", "name: N1", "name-twice", "outlets[3].name", "already used by outlets[0]"),
+    ("name: Crest", "name: \"A=B\"", "name", "outlets[3].name", "cannot name an outlet"),
     ("centre: 12", "centre: 120", "outside-pool", "outlets[2].centre", "outside"),
     ("diameter: 1.8", "diameter: 1.8, width: 2", "shape", "outlets[2].diameter", "height or width"),
     ("diameter: 1.8", "width: 2", "shape", "outlets[2].height", "height is missing"),
@@ -99,9 +119,9 @@ const REFUSED: &[Case] = &[
     ("range: [0.5, 2]", "range: [1.5, 2]", "leak-range", "outlets[1].leakage.range", "outside leakage.range"),
     ("head: 2,", "head: 0.0001,", "leak-head", "outlets[1].leakage.head", "less than a millimetre"),
     ("min: 15, max: 120", "min: 150, max: 120", "release-order", "release.min", "is above release.max"),
-    ("now: { N1: 50% }", "now: { N1: 40% }", "position", "now.N1", "has no position 40 %"),
-    ("now: { N1: 50% }", "now: { N9: 50% }", "unknown-outlet", "now.N9", "no outlet is named `N9`"),
-    ("now: { N1: 50% }", "now: { N1: -3 }", "negative", "now.N1", "cannot be negative"),
+    ("N1: 50%,", "N1: 40%,", "position", "now.N1", "has no position 40 %"),
+    ("N1: 50%,", "N9: 50%,", "unknown-outlet", "now.N9", "no outlet or well is named `N9`"),
+    ("N1: 50%,", "N1: -3,", "negative", "now.N1", "cannot be negative"),
     ("from: 05-01", "from: 13-01", "date", "targets[0].from", "13-01"),
     (
         "statistic: daily_mean",
@@ -153,7 +173,7 @@ fn scenario_the_site_that_is_changed_is_sound() {
 #[test]
 fn scenario_each_error_of_a_site_is_told_at_its_place_and_alone() {
     let mut wrong = Vec::new();
-    for (from, to, kind, path, words) in REFUSED {
+    for (from, to, kind, path, words) in REFUSED.iter().chain(limits::REFUSED) {
         let read = site(&changed(from, to), "site.yaml");
         let refused: Vec<_> = read.problems.iter().filter(|p| p.weight == Weight::Refused).collect();
         let told = refused.iter().any(|p| {
@@ -234,7 +254,7 @@ fn law_every_kind_of_problem_a_site_can_have_has_a_case() {
     for folder in ["src/site", "src/files/site"] {
         gather(&Path::new(env!("CARGO_MANIFEST_DIR")).join(folder), &mut kinds);
     }
-    let cases: BTreeSet<&str> = REFUSED.iter().chain(FLAGGED).map(|c| c.2).collect();
+    let cases: BTreeSet<&str> = REFUSED.iter().chain(limits::REFUSED).chain(FLAGGED).map(|c| c.2).collect();
     // shown by the two tests above
     let elsewhere =
         ["mixed-loss", "unknown-well", "no-outlet", "table-short", "volume-without-area", "table-empty"];

@@ -7,6 +7,7 @@ mod cautions;
 mod demo;
 mod escapes;
 mod exits;
+mod limits;
 mod loggers;
 mod refused;
 mod stories;

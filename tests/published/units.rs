@@ -3,11 +3,12 @@
 use crate::table::rows;
 use gatemix::units::{Dimension, Unit};
 
-const DIMENSIONS: [Dimension; 8] = [
+const DIMENSIONS: [Dimension; 9] = [
     Dimension::Length,
     Dimension::Area,
     Dimension::Volume,
     Dimension::Flow,
+    Dimension::Velocity,
     Dimension::Temperature,
     Dimension::TemperatureDifference,
     Dimension::Concentration,
@@ -16,7 +17,7 @@ const DIMENSIONS: [Dimension; 8] = [
 
 #[test]
 fn published_unit_factors() {
-    let rows = rows("unit_factors.csv", 17);
+    let rows = rows("unit_factors.csv", 18);
     for row in &rows {
         let named = |name: &str| DIMENSIONS.into_iter().find(|dimension| dimension.to_string() == name);
         let dimension = named(row.text("dimension")).unwrap();

@@ -1,11 +1,12 @@
 //! `site.yaml` into a raw site: every unknown key, wrong type and unit at once, each with its line.
 
+mod limits;
 mod outlets;
 
 use chrono::{Offset, Utc};
 
 use crate::problem::{Problem, any_refused};
-use crate::site::{ListedCast, Raw, RawPool, RawRow, RawTarget, SetNow, Site, WidthSource};
+use crate::site::{ListedCast, Raw, RawPool, RawRow, RawTarget, Site, WidthSource};
 use crate::units::{Dimension, Folder, System};
 
 use crate::files::cast::{Column, TIME_CURE, parse_time};
@@ -151,8 +152,13 @@ fn raw_site(map: Map) -> Raw {
     within(&map, "release", |m| {
         raw.release_min_m3s = read.optional(m, "min", Dimension::Flow);
         raw.release_max_m3s = read.optional(m, "max", Dimension::Flow);
+        raw.release_wanted_m3s = read.optional(m, "wanted", Dimension::Flow);
     });
-    within(&map, "now", |m| raw.now = now(&read, m));
+    within(&map, "now", |m| raw.now = limits::now(&read, m, &raw.outlets));
+    raw.inflow_m3s = read.optional(&map, "inflow", Dimension::Flow);
+    raw.blocks = limits::blocks(&read, &map);
+    within(&map, "bins", |m| limits::bins(&read, m, &mut raw.bins));
+    within(&map, "limits", |m| raw.limits = limits::limits(&read, m));
     raw.targets = each(&map, "targets", |m| target(&read, m));
     raw.cold_water_c = map
         .optional("cold_water")
@@ -280,21 +286,6 @@ fn pair(read: &In, value: &Value, dimensions: [Dimension; 2]) -> Option<(f64, f6
         return None;
     };
     Some((read.quantity(first, dimensions[0])?, read.quantity(second, dimensions[1])?))
-}
-
-fn now(read: &In, map: &Map) -> Vec<(String, SetNow)> {
-    map.entries()
-        .iter()
-        .filter_map(|(name, value)| {
-            let set = match value.scalar()? {
-                Scalar::Text(text) if text.trim_end().ends_with('%') => {
-                    SetNow::Opening(read.quantity(value, Dimension::Percent)? / 100.0)
-                }
-                _ => SetNow::Flow(read.quantity(value, Dimension::Flow)?),
-            };
-            Some(((*name).to_owned(), set))
-        })
-        .collect()
 }
 
 fn target(read: &In, map: &Map) -> RawTarget {

@@ -3,10 +3,11 @@
 use crate::files::cursor::{Map, Value};
 use crate::files::yaml::Node;
 use crate::problem::Problem;
-use crate::site::{Leakage, Opens, Position, RawOutlet, RawWell};
+use crate::site::{GenerationLost, Leakage, Opens, Position, RawAvoid, RawOutlet, RawWell};
 use crate::units::Dimension;
 
-use super::{In, number, pair, text, within};
+use super::limits::reason;
+use super::{In, each, number, pair, set_number, text, within};
 
 pub(super) fn well(read: &In, map: &Map) -> RawWell {
     RawWell {
@@ -14,7 +15,9 @@ pub(super) fn well(read: &In, map: &Map) -> RawWell {
         conduit_m: read.required(map, "conduit", Dimension::Length),
         max_open: number(map, "max_open"),
         max_head_loss_m: read.optional(map, "max_head_loss", Dimension::Length),
+        min_flow_m3s: read.optional(map, "min_flow", Dimension::Flow),
         max_flow_m3s: read.optional(map, "max_flow", Dimension::Flow),
+        plan_area_m2: read.optional(map, "plan_area", Dimension::Area),
     }
 }
 
@@ -33,6 +36,9 @@ pub(super) fn outlet(read: &In, map: &Map) -> RawOutlet {
         opens: opens(map),
         gated: map.optional("gated").and_then(|v| v.boolean()),
         min_submergence_m: read.optional(map, "min_submergence", Dimension::Length),
+        max_entrance_m_s: read.optional(map, "max_entrance_velocity", Dimension::Velocity),
+        moves_under_flow: map.optional("moves_under_flow").and_then(|v| v.boolean()),
+        uncertain: map.optional("uncertain").and_then(|v| v.boolean()).unwrap_or(false),
         ..RawOutlet::default()
     };
     out.rating = map
@@ -58,6 +64,24 @@ pub(super) fn outlet(read: &In, map: &Map) -> RawOutlet {
         let head = read.required(m, "head", Dimension::Length);
         let range_m3s = m.optional("range").and_then(|v| pair(read, &v, [Dimension::Flow, Dimension::Flow]));
         out.leakage = flow.zip(head).map(|(flow_m3s, head_m)| Leakage { flow_m3s, head_m, range_m3s });
+    });
+    let span = |m: &Map, key, dimension| m.optional(key).and_then(|v| pair(read, &v, [dimension, dimension]));
+    out.pool_window_m = span(map, "pool_window", Dimension::Length);
+    out.avoid = each(map, "avoid", |m| RawAvoid {
+        openings: span(m, "open", Dimension::Percent).map(|(from, to)| (from / 100.0, to / 100.0)),
+        flows_m3s: span(m, "flow", Dimension::Flow),
+        reason: reason(m),
+    });
+    within(map, "crew", |m| {
+        set_number(m, "hours", &mut out.crew.hours);
+        set_number(m, "lead_days", &mut out.crew.lead_days);
+        set_number(m, "cost", &mut out.crew.cost);
+    });
+    within(map, "generation_lost", |m| {
+        let flow = read.required(m, "flow", Dimension::Flow);
+        let power = m.required("power").and_then(|v| v.number());
+        out.generation_lost =
+            flow.zip(power).map(|(flow_m3s, power_mw)| GenerationLost { flow_m3s, power_mw });
     });
     out
 }

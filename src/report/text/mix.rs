@@ -40,7 +40,7 @@ pub(super) fn body(context: &Context, answer: &MixAnswer) -> String {
 }
 
 pub(super) fn not_checked(answer: &MixAnswer) -> String {
-    wrapped(&format!("Not checked: {}", answer.mix.not_checked.join(", ")), 13)
+    wrapped(&format!("Not checked: {}", harmless(&answer.mix.not_checked.join("; "))), 13)
 }
 
 /// What is set, for each gate: `N3 600 cfs`, or `N3 50 % 600 cfs` where it is not known to be fully open.

@@ -1,5 +1,7 @@
 //! From raw to checked site: every problem at once, each at its path.
 
+mod limits;
+mod operation;
 mod outlets;
 mod rules;
 
@@ -11,7 +13,7 @@ use crate::problem::{Problem, any_refused};
 use crate::target::Target;
 use crate::units::{Datum, say};
 
-use super::{Bins, Limits, Outlet, Pool, Raw, ReleaseLimits, Site, Whereabouts};
+use super::{Outlet, Pool, Raw, Site, Whereabouts};
 
 /// Altitudes of settled land, m (choice, wide).
 const ALTITUDE_M: std::ops::RangeInclusive<f64> = -450.0..=6000.0;
@@ -49,23 +51,12 @@ impl Site {
             );
         }
         outlets::mixed_losses(raw, &mut problems);
-        let release =
-            ReleaseLimits { min_m3s: raw.release_min_m3s, max_m3s: raw.release_max_m3s, wanted_m3s: None };
-        if let (Some(min), Some(max)) = (release.min_m3s, release.max_m3s)
-            && min > max
-        {
-            problems.push(
-                Problem::refused(
-                    "release-order",
-                    format!("release.min {} is above release.max {}", say::m3s(min, 2), say::m3s(max, 2)),
-                    "swap them",
-                )
-                .at("release.min"),
-            );
-        }
+        let release = limits::release(raw, &mut problems);
+        limits::blocks(&raw.blocks, &mut problems);
+        let limits = limits::limits(raw, pool.as_ref(), &mut problems);
         let targets: Vec<Option<Target>> =
             raw.targets.iter().enumerate().map(|(i, t)| rules::target(t, i, &mut problems)).collect();
-        let now = rules::now(raw, &outlets, &mut problems);
+        let (now, now_wells) = operation::now(raw, &outlets, &mut problems);
         rules::spread(raw, &mut problems);
         if any_refused(&problems) {
             return (None, problems);
@@ -82,12 +73,12 @@ impl Site {
                 wells: wells.into_iter().collect::<Option<_>>()?,
                 outlets: outlets.into_iter().collect::<Option<_>>()?,
                 release,
-                limits: Limits::default(),
-                blocks: Vec::new(),
-                inflow_m3s: None,
-                bins: Bins::default(),
+                limits,
+                blocks: raw.blocks.clone(),
+                inflow_m3s: raw.inflow_m3s,
+                bins: raw.bins,
                 now,
-                now_wells: Vec::new(),
+                now_wells,
                 targets: targets.into_iter().collect::<Option<_>>()?,
                 cold_water_c: raw.cold_water_c.clone(),
                 water: raw.water,

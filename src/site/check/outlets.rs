@@ -1,8 +1,10 @@
 //! Checks of wells and outlets.
 
 use crate::problem::Problem;
-use crate::site::{Crew, Kind, Outlet, Pool, Position, Raw, RawOutlet, RawWell, Shape, Well};
+use crate::site::{Kind, Outlet, Pool, Position, Raw, RawOutlet, RawWell, Shape, Well};
 use crate::units::say;
+
+use super::operation;
 
 /// Least head a leak can be told at, m (choice).
 const LEAK_HEAD_M: f64 = 1e-3;
@@ -67,14 +69,15 @@ pub(super) fn wells(raw: &Raw, pool: Option<&Pool>, problems: &mut Vec<Problem>)
             }
             count.map(usize::from)
         });
+        operation::well(w, i, problems);
         Some(Well {
             name: w.name.clone()?,
             conduit_m: w.conduit_m?,
             max_open,
             max_head_loss_m: positive(w.max_head_loss_m, at("max_head_loss"), "max_head_loss", problems),
-            min_flow_m3s: 0.0,
+            min_flow_m3s: w.min_flow_m3s.unwrap_or(0.0),
             max_flow_m3s: positive(w.max_flow_m3s, at("max_flow"), "max_flow", problems),
-            plan_area_m2: None,
+            plan_area_m2: w.plan_area_m2,
         })
     };
     raw.wells.iter().enumerate().map(build).collect()
@@ -177,6 +180,7 @@ pub(super) fn outlet(
         }
     };
     positions(o, i, crest, pool, problems);
+    let avoid = operation::outlet(o, i, pool, problems);
     let kind = if crest { crest_kind(o, i, problems) } else { orifice_kind(o, i, problems) };
     // fully open is the lowest edge the crew can set
     let edges = o.positions.iter().filter_map(|p| p.crest_m);
@@ -195,13 +199,13 @@ pub(super) fn outlet(
         flow_min_m3s: o.flow_min_m3s.unwrap_or(0.0),
         flow_max_m3s: o.flow_max_m3s,
         leakage: o.leakage,
-        pool_window_m: None,
-        avoid: Vec::new(),
-        max_entrance_m_s: None,
-        moves_under_flow: None,
-        crew: Crew::default(),
-        generation_lost: None,
-        uncertain: false,
+        pool_window_m: o.pool_window_m,
+        avoid,
+        max_entrance_m_s: o.max_entrance_m_s,
+        moves_under_flow: o.moves_under_flow,
+        crew: o.crew,
+        generation_lost: o.generation_lost,
+        uncertain: o.uncertain,
     };
     if let Some(pool) = pool
         && (built.sill_m() < pool.bed_m - 1e-9 || centre_m > pool.top_m())

@@ -1,7 +1,7 @@
-//! Checks of targets, the setting now, and the figures of `band` and `checks`.
+//! Checks of targets, and the figures of `band`, `bins` and `checks`.
 
 use crate::problem::Problem;
-use crate::site::{Outlet, Raw, RawTarget, SetNow};
+use crate::site::{Raw, RawTarget};
 use crate::target::{Span, Statistic, Target, YearDay};
 
 use super::outlets::{not_negative, positive};
@@ -68,52 +68,7 @@ pub(super) fn target(t: &RawTarget, i: usize, problems: &mut Vec<Problem>) -> Op
     Some(built)
 }
 
-pub(super) fn now(
-    raw: &Raw,
-    outlets: &[Option<Outlet>],
-    problems: &mut Vec<Problem>,
-) -> Vec<(usize, SetNow)> {
-    let mut out = Vec::new();
-    for (name, set) in &raw.now {
-        let path = format!("now.{name}");
-        let Some(index) = raw.outlets.iter().position(|o| o.name.as_deref() == Some(name)) else {
-            problems.push(
-                Problem::refused(
-                    "unknown-outlet",
-                    format!("no outlet is named `{name}`"),
-                    "correct the name",
-                )
-                .at(path),
-            );
-            continue;
-        };
-        match set {
-            SetNow::Flow(flow) if *flow < 0.0 => {
-                not_negative(Some(*flow), path, "flow", problems);
-            }
-            SetNow::Opening(share) => {
-                let stands = outlets[index].as_ref().is_none_or(|o| {
-                    o.positions.is_empty() || o.positions.iter().any(|p| (p.opening - share).abs() < 1e-9)
-                });
-                if !(0.0..=1.0).contains(share) || !stands {
-                    problems.push(
-                        Problem::refused(
-                            "position",
-                            format!("`{name}` has no position {:.0} %", share * 100.0),
-                            "use one of its positions",
-                        )
-                        .at(path),
-                    );
-                }
-                out.push((index, *set));
-            }
-            SetNow::Flow(_) => out.push((index, *set)),
-        }
-    }
-    out
-}
-
-/// The figures of `band` and `checks` must be possible spreads.
+/// The figures of `band`, `bins` and `checks` must be possible spreads.
 pub(super) fn spread(raw: &Raw, problems: &mut Vec<Problem>) {
     let b = &raw.band;
     if !(10..=10_000).contains(&b.members) {
@@ -156,6 +111,14 @@ pub(super) fn spread(raw: &Raw, problems: &mut Vec<Problem>) {
         (c.heat_w_m2, "heat_w_m2"),
     ] {
         positive(Some(value), format!("checks.{key}"), key, problems);
+    }
+    let bins = [
+        (raw.bins.temperature_c, "temperature"),
+        (raw.bins.oxygen_mg_l, "oxygen"),
+        (raw.bins.cold_share, "cold_water"),
+    ];
+    for (value, key) in bins {
+        positive(Some(value), format!("bins.{key}"), key, problems);
     }
     positive(Some(raw.water.tds_per_us_cm), "water.tds_factor".into(), "tds_factor", problems);
     if raw.water.solids_kg_m3 <= 1000.0 {

@@ -2,10 +2,12 @@
 
 mod balance;
 mod band;
+mod checks;
 mod judging;
 mod leaks;
 mod limits;
 mod order;
 mod overlaps;
+mod rules;
 mod sites;
 mod wells;

@@ -1,0 +1,155 @@
+//! The ranking: what was found, as mixes with names.
+
+use crate::mix::limits::Check;
+use crate::mix::{Asked, Gate};
+
+use super::Question;
+use super::choices::MOST_BLOCKS;
+use super::offers::Offers;
+use super::units::Unit;
+
+/// One mix of a ranking, as the search knows it.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Ranked {
+    /// What is set in each part of the day.
+    pub asked: Vec<Asked>,
+    /// Its number in the fixed order.
+    pub number: u64,
+    /// Outlets open, in the order of the file.
+    pub open: Vec<usize>,
+    /// Levels drawn through, as indices of the groups of outlets, rising.
+    pub levels: Vec<usize>,
+}
+
+/// A limit that rejects mixes.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Rejected {
+    /// The limit at its smallest miss.
+    pub check: Check,
+    /// Number of mixes examined that break it; a limit of the whole mix is tried only on mixes whose parts keep
+    /// their own.
+    pub count: u64,
+    /// What is open in the mix that comes nearest, as far as the limit speaks of it.
+    pub open: Vec<(usize, f64)>,
+}
+
+/// A value of an allowed mix.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Extreme {
+    /// The value as the search knows it.
+    pub value: f64,
+    /// The mix.
+    pub mix: Ranked,
+}
+
+/// A ranking.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Ranking {
+    /// The best mix of each set of open outlets, best first.
+    pub mixes: Vec<Ranked>,
+    /// Their keys: the smaller the better.
+    pub keys: Vec<f64>,
+    /// Limits that reject, by group, rule and what they are of.
+    pub rejected: Vec<Rejected>,
+    /// Mixes there are: every state of every unit, every split of the release at the step.
+    pub examined: u64,
+    /// Mixes held against every rule.
+    pub judged: u64,
+    /// Mixes passed over because a part of them alone breaks a limit.
+    pub skipped: u64,
+    /// Mixes allowed.
+    pub allowed: u64,
+    /// Coldest and warmest allowed mix, C.
+    pub attainable_c: Option<[Extreme; 2]>,
+    /// Allowed mixes of least and most oxygen, mg/L.
+    pub attainable_oxygen_mg_l: Option<[Extreme; 2]>,
+    /// Mixes that no other beats in both distance from the preferred temperature and oxygen, nearest first; the
+    /// values are oxygen, mg/L.
+    pub trade: Vec<Extreme>,
+}
+
+impl Ranking {
+    /// The first mixes that differ in the levels they draw through, with how many other sets of outlets draw through
+    /// the same.
+    pub fn ideas(&self, top: usize) -> Vec<(&Ranked, usize)> {
+        let mut ideas: Vec<(&Ranked, usize)> = Vec::new();
+        for mix in &self.mixes {
+            match ideas.iter_mut().find(|(first, _)| first.levels == mix.levels) {
+                Some(idea) => idea.1 += 1,
+                None => ideas.push((mix, 0)),
+            }
+        }
+        ideas.truncate(top);
+        ideas
+    }
+
+    /// The best mix that leaves an outlet shut.
+    pub fn without(&self, outlet: usize) -> Option<&Ranked> {
+        self.mixes.iter().find(|m| !m.open.contains(&outlet))
+    }
+}
+
+/// Turns numbers of mixes into what is set.
+pub(super) struct Decoder<'a> {
+    pub(super) question: &'a Question<'a>,
+    pub(super) units: &'a [Unit],
+    pub(super) offers: &'a Offers,
+    /// Level of each outlet.
+    pub(super) level_of: &'a [usize],
+    /// Release shared out in each block, m3/s.
+    pub(super) flows_m3s: [f64; MOST_BLOCKS],
+}
+
+impl Decoder<'_> {
+    /// Steps of the release and state of each unit, `None` for shut.
+    pub(super) fn codes(&self, number: u64) -> Vec<(usize, Option<usize>)> {
+        let mut left = number;
+        self.offers
+            .codes
+            .iter()
+            .zip(&self.offers.places)
+            .map(|(codes, place)| {
+                let code = usize::try_from(left / place).unwrap_or(0);
+                left %= place;
+                codes.get(code).copied().unwrap_or((0, None))
+            })
+            .collect()
+    }
+
+    pub(super) fn mix(&self, number: u64) -> Ranked {
+        let codes = self.codes(number);
+        let steps = self.question.steps as f64;
+        let asked: Vec<Asked> = (0..self.question.blocks.len())
+            .map(|block| {
+                let mut asked = Asked::default();
+                for (unit, &(share, state)) in self.units.iter().zip(&codes) {
+                    if let Some(flow_m3s) = unit.spills_m3s {
+                        let outlet = unit.outlets[0];
+                        asked.direct.push(Gate { outlet, opening: 1.0, flow_m3s });
+                    }
+                    let Some(state) = state else { continue };
+                    let flow_m3s = share as f64 / steps * self.flows_m3s[block];
+                    for (outlet, opening) in unit.states[state].open(unit) {
+                        match unit.well {
+                            None => asked.direct.push(Gate { outlet, opening, flow_m3s }),
+                            Some(_) => asked.open.push((outlet, opening)),
+                        }
+                    }
+                    if let Some(well) = unit.well {
+                        asked.totals.push((well, flow_m3s));
+                    }
+                }
+                asked
+            })
+            .collect();
+        let first = asked.first();
+        let mut open: Vec<usize> = first.map_or_else(Vec::new, |a| {
+            a.direct.iter().map(|g| g.outlet).chain(a.open.iter().map(|o| o.0)).collect()
+        });
+        open.sort_unstable();
+        let mut levels: Vec<usize> = open.iter().map(|&o| self.level_of[o]).collect();
+        levels.sort_unstable();
+        levels.dedup();
+        Ranked { asked, number, open, levels }
+    }
+}
