@@ -11,7 +11,7 @@ use crate::withdrawal::{CrestForm, Sink, zone};
 use super::band::{GREATEST_LOSS, LEAST_LOSS};
 use super::levels::{Gate, Seat, Setting, seat};
 
-/// Flows have settled when none moves by more than this share of its well's total.
+/// Flows have settled when none moves by more than this share of its well's total (choice).
 const SETTLED: f64 = 1e-9;
 /// Most rounds over the wells (choice); one well settles in one.
 const ROUNDS: usize = 60;
@@ -138,7 +138,9 @@ fn at_loss(
             break;
         }
         if round + 1 == ROUNDS {
-            wells.iter_mut().for_each(|w| w.state.settled = false);
+            for well in &mut wells {
+                well.state.settled = false;
+            }
         }
     }
     let mut setting = Setting::of(asked.direct.clone());

@@ -221,7 +221,7 @@ fn scenario_head_over_a_well_is_judged_where_its_losses_are_known() {
     assert!(limits(&kept).is_empty() && !unchecked(&kept), "{:?}", limits(&kept));
     for missed in [mix(SITE, "--open N1=100% --release 32"), mix(SITE, "--set N1=32")] {
         let head = number(&missed["wells"][0]["head_m"]);
-        let words = format!("max_head_loss of well `North`: {head:.2} m at this flow, 0.50 m allowed");
+        let words = format!("max_head_loss of well `North`: {head:.2} m of head, 0.50 m allowed");
         assert!(head > 0.5 && limits(&missed)[0].contains(&words), "{:?}", limits(&missed));
         assert!(!unchecked(&missed));
     }
@@ -314,6 +314,11 @@ fn scenario_the_setting_now_may_stand_in_openings() {
     assert_eq!(said(&told, "now-not-shown"), None);
     let alone = run(&["mix", folder(&now).named(), "--json"]).json();
     assert_eq!(alone["set"], told["set"]);
+    let wells = "now: { North: 25, N1: 100%, N3: 50%, Leaves: two leaves }";
+    let shown = mix(&with(SITE, "now: { N1: 10 }", wells), "--set N1=10");
+    let told = mix(SITE, "--set North=25 --open N1=100% --open N3=50% --open Leaves=50%");
+    assert_eq!((&shown["now"]["set"], &shown["now"]["open"]), (&told["set"], &told["open"]));
+    assert_eq!(shown["now"]["release"], told["release"]);
     let unknown = mix(&with(SITE, "now: { N1: 10 }", "now: { N1: 50% }"), "--set N1=10");
     assert!(said(&unknown, "now-not-shown").unwrap().ends_with("(--set North=30; under `now`, North: 30)"));
 }

@@ -20,7 +20,7 @@ pub fn not_checked(
     let mut outlets: Vec<usize> = setting
         .gates
         .iter()
-        .filter(|g| g.flow_m3s > 0.0 && g.outlet < site.outlets.len())
+        .filter(|g| g.outlet < site.outlets.len() && setting.stands_open(site, g))
         .map(|g| g.outlet)
         .collect();
     outlets.sort_unstable_by_key(|&i| &site.outlets[i].name);

@@ -109,18 +109,23 @@ fn asked<T>(
     words: &[&str],
     told: impl Fn(&Context, Result<MixAnswer, Failure>) -> T,
 ) -> Vec<T> {
+    let context = opened(pool);
+    let mix = |sets: &Vec<String>| {
+        let words: Vec<Word> = sets.iter().map(|set| Word::Now(set)).collect();
+        tasks::mix(&context, &words)
+    };
+    orders(words).iter().map(|sets| told(&context, mix(sets))).collect()
+}
+
+/// The site written to disk and opened, its cast read.
+pub(super) fn opened(pool: Option<&str>) -> Context {
     let folder = tempfile::tempdir().unwrap();
     std::fs::write(folder.path().join("site.yaml"), SITE).unwrap();
     std::fs::write(folder.path().join("cast.csv"), CAST).unwrap();
     let path = |file: &str| Some(folder.path().join(file).display().to_string());
     let pool = pool.map(str::to_owned);
     let asked = Asked { site: path(""), profile: path("cast.csv"), pool, ..Asked::default() };
-    let context = tasks::open(&asked, "2026-07-14T18:30:00Z".parse().unwrap()).unwrap();
-    let mix = |sets: &Vec<String>| {
-        let words: Vec<Word> = sets.iter().map(|set| Word::Now(set)).collect();
-        tasks::mix(&context, &words)
-    };
-    orders(words).iter().map(|sets| told(&context, mix(sets))).collect()
+    tasks::open(&asked, "2026-07-14T18:30:00Z".parse().unwrap()).unwrap()
 }
 
 /// Several limits of several gates are broken at once.

@@ -3,11 +3,13 @@
 use approx::assert_relative_eq;
 use gatemix::mix::{Asked, Gate, Setting, groups, resolve};
 use gatemix::problem::Problem;
-use gatemix::site::Site;
+use gatemix::site::{RawWell, SetNow, Site};
+use gatemix::tasks::{self, Failure, Word};
 use proptest::prelude::*;
 
-use super::sites::{Case, Kinds, Ready, cases};
-use crate::columns::config;
+use super::order::opened;
+use super::sites::{Case, Kinds, Ready, basin, cases, gate, port};
+use crate::columns::{config, worked};
 
 const TIGHT: Kinds = Kinds { leaks: false, crests: false };
 const LEAKY: Kinds = Kinds { leaks: true, crests: true };
@@ -177,4 +179,69 @@ proptest! {
         }
         prop_assert!(!warnings(ready, given).iter().any(|w| w.kind == "split-differs"));
     }
+}
+
+/// Two ports of 6 m2 at 30 and 45 m, the conduit low, 10 m3/s between them: 48 % above (the worked chain).
+fn shaft() -> (Ready, Asked) {
+    let mut raw = basin(&worked());
+    raw.wells = vec![RawWell { name: Some("Shaft".into()), conduit_m: Some(2.0), ..RawWell::default() }];
+    raw.outlets = vec![port("low", 30.0, 2.0, 3.0), port("high", 45.0, 2.0, 3.0)];
+    for outlet in &mut raw.outlets {
+        (outlet.well, outlet.loss) = (Some("Shaft".into()), Some(1.5));
+    }
+    let ready = Case { raw, water: worked(), gates: vec![gate(0, 10.0)] }.ready().unwrap();
+    (ready, Asked { open: vec![(0, 1.0), (1, 1.0)], totals: vec![(0, 10.0)], ..Asked::default() })
+}
+
+/// 4.809 m3/s through 6 m2 is 0.8015 m/s, 49.13 mm of loss; a tenth of that is the head of 0.3104 m/s, in a shaft of
+/// 32.22 m2.
+#[test]
+fn scenario_a_narrow_shaft_is_told() {
+    for (plan_area_m2, told) in [(Some(32.0), true), (Some(32.4), false), (None, false)] {
+        let (mut ready, asked) = shaft();
+        ready.site.wells[0].plan_area_m2 = plan_area_m2;
+        let setting = resolved(&ready, &asked);
+        let warnings = warnings(ready, setting);
+        assert_eq!(warnings.iter().any(|w| w.kind == "shaft-velocity"), told, "{plan_area_m2:?}");
+    }
+}
+
+#[test]
+fn scenario_a_split_that_did_not_settle_is_told() {
+    for settled in [true, false] {
+        let (ready, asked) = shaft();
+        let mut setting = resolved(&ready, &asked);
+        assert!(setting.wells[0].settled);
+        setting.wells[0].settled = settled;
+        assert_eq!(warnings(ready, setting).iter().any(|w| w.kind == "unsettled"), !settled);
+    }
+}
+
+/// Openings with the well's total now are what the same words give; without the total it is asked for.
+#[test]
+fn scenario_the_setting_now_in_openings_with_the_wells_total() {
+    let mut context = opened(None);
+    let [b, c] = ["B", "C"].map(|name| context.site().outlet(name).unwrap());
+    context.folder.site.now = vec![(c, SetNow::Opening(0.5)), (b, SetNow::Opening(1.0))];
+    let Err(Failure::Usage(why)) = tasks::now_setting(&context) else { panic!("a total is missing") };
+    assert!(why.starts_with("well `Shaft` has an open gate and no total"), "{why}");
+    let told = |context: &_| {
+        let answer = tasks::mix(context, &[Word::Set("Sluice=5")]).unwrap();
+        let why = answer.mix.warnings.iter().find(|w| w.kind == "now-not-shown").map(|w| w.words.clone());
+        (answer.now, why)
+    };
+    assert!(told(&context).1.unwrap().ends_with(&why));
+
+    context.folder.site.now_wells = vec![(0, 12.0)];
+    let (now, why) = told(&context);
+    assert_eq!(why, None);
+    let words = [Word::Open("B=100%"), Word::Open("C=50%"), Word::Set("Shaft=12")];
+    let answer = tasks::mix(&context, &words).unwrap();
+    let (setting, mix) = now.unwrap();
+    assert_eq!((&setting, &mix.release), (&answer.setting, &answer.mix.release));
+    // it is the setting tried, so there is no other
+    assert_eq!(answer.now, None);
+    let released = [Word::Release("12"), Word::Open("C=50%"), Word::Open("B=100%")];
+    assert_eq!(tasks::setting(&context, &released).unwrap().setting, setting);
+    assert_eq!(tasks::mix(&context, &[]).unwrap().setting, setting);
 }
