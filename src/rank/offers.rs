@@ -401,6 +401,7 @@ impl Kitchen<'_> {
             settled: true,
             assumed_loss: false,
             given: false,
+            split: Vec::new(),
         };
         let weights = self.levels.weights;
         let open = flows.iter().filter(|f| f.1 > 0.0).map(|f| Gate {
