@@ -13,11 +13,9 @@ use super::units::{Unit, openings};
 /// Most openings of the outlets of one level, all taken together (choice).
 const MOST_CODES: usize = 100_000;
 
-/// What an outlet is to its level: nothing, a leak, or an opening.
+/// What an outlet that draws is to its level.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub(super) enum Member {
-    /// It gives nothing.
-    Absent,
     /// Shut, and leaking.
     Leak,
     /// Open so far, 0 to 1.
@@ -49,7 +47,6 @@ impl Level {
                 };
                 return place
                     * match member {
-                        Member::Absent => 0,
                         Member::Leak => 1,
                         Member::Open(opening) => 2 + nearest(opening),
                     };
