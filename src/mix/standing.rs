@@ -38,6 +38,14 @@ impl TargetStanding {
     pub fn missed(&self) -> bool {
         [self.temperature.0, self.oxygen.0].iter().any(|s| matches!(s, Standing::Below | Standing::Above))
     }
+
+    /// Whether a bound the rule sets cannot be judged.
+    pub fn unknown(&self, site: &Site) -> bool {
+        let rule = &site.targets[self.target];
+        let range = rule.low_c.is_some() || rule.high_c.is_some();
+        (range && self.temperature.0 == Standing::Unknown)
+            || (rule.oxygen_min_mg_l.is_some() && self.oxygen.0 == Standing::Unknown)
+    }
 }
 
 /// A part of the day: its share of it, what is then released, and its perturbed cases.

@@ -47,6 +47,18 @@ impl Criterion {
     }
 }
 
+impl Criterion {
+    /// The first criterion of an order in which two keys differ.
+    pub fn first_apart(order: &[Self], a: f64, b: f64) -> Option<Self> {
+        let mut weight: f64 = order.iter().map(|c| c.steps()).product();
+        order.iter().copied().find(|criterion| {
+            weight /= criterion.steps();
+            let step = |key: f64| (key / weight).floor();
+            step(a) < step(b) || step(a) > step(b)
+        })
+    }
+}
+
 /// Steps a criterion can take before it stays where it is (choice: 255 bins of 0.5 C are beyond any water). All
 /// criteria together stay below 2^53, so that a key is a whole number that a float holds exactly.
 const STEPS: f64 = 256.0;

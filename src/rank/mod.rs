@@ -34,7 +34,7 @@ use seats::Level;
 
 pub use curve::{Curve, Curves, Water};
 pub use goal::Criterion;
-pub use ranking::{Extreme, Ranked, Ranking, Rejected};
+pub use ranking::{Extreme, Idea, Ranked, Ranking, Rejected};
 pub use search::Progress;
 
 /// Most mixes judged in one ranking (choice): about ten seconds of one core.

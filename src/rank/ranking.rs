@@ -46,6 +46,17 @@ pub struct Extreme {
     pub mix: Ranked,
 }
 
+/// Mixes that draw through the same levels: near-duplicates of one idea.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Idea<'a> {
+    /// The best of them.
+    pub best: &'a Ranked,
+    /// Its key.
+    pub key: f64,
+    /// How many other sets of outlets draw through the same levels.
+    pub alike: usize,
+}
+
 /// A ranking.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Ranking {
@@ -73,14 +84,13 @@ pub struct Ranking {
 }
 
 impl Ranking {
-    /// The first mixes that differ in the levels they draw through, with how many other sets of outlets draw through
-    /// the same.
-    pub fn ideas(&self, top: usize) -> Vec<(&Ranked, usize)> {
-        let mut ideas: Vec<(&Ranked, usize)> = Vec::new();
-        for mix in &self.mixes {
-            match ideas.iter_mut().find(|(first, _)| first.levels == mix.levels) {
-                Some(idea) => idea.1 += 1,
-                None => ideas.push((mix, 0)),
+    /// The first mixes that differ in the levels they draw through.
+    pub fn ideas(&self, top: usize) -> Vec<Idea<'_>> {
+        let mut ideas: Vec<Idea> = Vec::new();
+        for (mix, &key) in self.mixes.iter().zip(&self.keys) {
+            match ideas.iter_mut().find(|idea| idea.best.levels == mix.levels) {
+                Some(idea) => idea.alike += 1,
+                None => ideas.push(Idea { best: mix, key, alike: 0 }),
             }
         }
         ideas.truncate(top);
