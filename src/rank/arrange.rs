@@ -32,6 +32,7 @@ pub(super) fn arranged(units: &[Choices], steps: usize, levels: &Levels, undrawn
         idea: 0,
         number: 0,
         parts: Vec::new(),
+        slots: 0,
     });
     let mut head = Vec::new();
     let mut alone = Vec::new();

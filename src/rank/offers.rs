@@ -17,6 +17,7 @@ use crate::withdrawal::{Sink, zone};
 use super::Question;
 use super::choices::{Choice, Choices, Levels, MOST_BLOCKS, Part};
 use super::curve::Curves;
+use super::goal::effort;
 use super::seats::{Level, Member};
 use super::arrange::ways;
 use super::units::{State, Unit};
@@ -311,6 +312,7 @@ impl Kitchen<'_> {
             idea: 0,
             number: 0,
             parts: Vec::new(),
+            slots: 0,
         };
         let mut touched: Vec<usize> = flows.iter().map(|f| self.level_of[f.0]).collect();
         touched.sort_unstable();
@@ -338,6 +340,7 @@ impl Kitchen<'_> {
                     for (lane, add) in choice.lanes.iter_mut().zip(&alone) {
                         *lane += add;
                     }
+                    choice.slots |= 1 << slot;
                     choice.parts.push(Part { slot, code, flows_m3s: by_block, alone, alone_unknown });
                 }
             }
@@ -415,7 +418,7 @@ impl Kitchen<'_> {
         let mut checks = Vec::new();
         let moves = limits::moves(self.site(), &from, &to, &mut checks);
         let at = self.levels.lanes;
-        lanes[at.cost()] += moves.cost;
+        lanes[at.effort()] += effort(moves.cost, moves.crew_hours);
         lanes[at.hours()] += moves.crew_hours;
         lanes[at.moves()] += moves.count as f64;
         broken.extend(checks.into_iter().filter(Check::broken));

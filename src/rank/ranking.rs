@@ -4,7 +4,7 @@ use crate::mix::limits::Check;
 use crate::mix::{Asked, Gate};
 
 use super::Question;
-use super::choices::{Levels, MOST_BLOCKS};
+use super::choices::{Levels, MOST_BLOCKS, shared};
 use super::offers::{Code, Offers};
 use super::units::Unit;
 
@@ -183,7 +183,7 @@ impl Decoder<'_> {
             unknown |= choice.unknown;
             parts.extend(&choice.parts);
         }
-        unknown |= self.levels.join(&parts, &mut sums);
+        unknown |= self.levels.join(&parts, shared(&parts), &mut sums);
         let mean = |lane: usize| -> f64 {
             let weights = self.levels.weights.iter().enumerate();
             weights.map(|(b, w)| w * sums[3 * b + lane] / sums[3 * b]).sum()
