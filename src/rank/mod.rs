@@ -94,6 +94,9 @@ pub fn rank(question: &Question, progress: Progress) -> Result<Ranking, Stopped>
     for (flow, block) in flows_m3s.iter_mut().zip(question.blocks) {
         *flow = (block.1 - spilt).max(0.0);
     }
+    // where what spills by itself is all that is wanted, nothing is left to share out
+    let nothing_left = flows_m3s.iter().all(|flow| *flow <= 0.0);
+    let question = &Question { steps: if nothing_left { 0 } else { question.steps }, ..*question };
     let most_m3s = BEYOND * (question.blocks.iter().map(|b| b.1).fold(0.0, f64::max) + spilt);
     curves.solve(&profile.column, most_m3s, site.cold_water_c.first().copied());
     let slots = slots(question, &seats, &curves, most_m3s);
