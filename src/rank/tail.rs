@@ -134,13 +134,7 @@ pub(super) struct Days {
 impl Default for Days {
     fn default() -> Self {
         let none = [0.0; ROWS];
-        Self {
-            temperature_c: [none; 3],
-            oxygen_mg_l: [none; 2],
-            cold_share: none,
-            cost: none,
-            hours: none,
-        }
+        Self { temperature_c: [none; 3], oxygen_mg_l: [none; 2], cold_share: none, cost: none, hours: none }
     }
 }
 
