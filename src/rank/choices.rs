@@ -57,6 +57,8 @@ pub(super) struct Part {
     pub(super) slot: usize,
     /// Its part of the slot's code.
     pub(super) code: usize,
+    /// A gate that somebody set is among it: no leak, and nothing that spills by itself.
+    pub(super) set: bool,
     /// Flow in each block, m3/s.
     pub(super) flows_m3s: [f64; MOST_BLOCKS],
     /// What it adds to the lanes when nothing else draws there; already in the choice's lanes.

@@ -133,7 +133,11 @@ impl Found {
 
 /// Bin of the trade curve that holds a distance from the preferred temperature, C; the last holds all beyond.
 #[inline]
-#[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "a whole number from 0 to the last bin")]
+#[expect(
+    clippy::cast_possible_truncation,
+    clippy::cast_sign_loss,
+    reason = "a whole number from 0 to the last bin"
+)]
 fn trade_bin(distance_c: f64) -> usize {
     let last = (TRADE_BINS - 1) as f64;
     let bin = whole(distance_c * (1.0 / TRADE_STEP_C));

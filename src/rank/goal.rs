@@ -245,11 +245,29 @@ impl Goal {
     }
 }
 
-/// Effort of the moves of one unit: steps of their cost, then of their crew hours, in one whole number; efforts of
-/// several units add up.
-pub(super) fn effort(cost: f64, crew_hours: f64) -> f64 {
-    let steps = |value: f64, step: f64| up_to(whole(value / step + 0.5), MOVE_STEPS / 16.0 - 1.0);
-    steps(cost, COST_STEP) * MOVE_STEPS + steps(crew_hours, HOUR_STEP)
+/// Steps of cost and of crew hours by which efforts are told apart: a tenth and a quarter, or wider where all gates of
+/// the site together would come to more steps than a key holds.
+#[derive(Debug, Clone, Copy)]
+pub(super) struct Efforts {
+    cost: f64,
+    hours: f64,
+}
+
+impl Efforts {
+    pub(super) fn of(site: &Site) -> Self {
+        let outlets = site.outlets.len() as f64;
+        let step = |least: f64, all: f64| least.max(all / (MOVE_STEPS - 1.0 - outlets).max(1.0));
+        Self {
+            cost: step(COST_STEP, site.outlets.iter().map(|o| o.crew.cost).sum()),
+            hours: step(HOUR_STEP, site.outlets.iter().map(|o| o.crew.hours).sum()),
+        }
+    }
+
+    /// Effort of the moves of one unit: steps of their cost, then of their crew hours, in one whole number. Efforts of
+    /// several units add up.
+    pub(super) fn effort(self, cost: f64, crew_hours: f64) -> f64 {
+        whole(cost / self.cost + 0.5) * MOVE_STEPS + whole(crew_hours / self.hours + 0.5)
+    }
 }
 
 /// The larger of two numbers that are numbers.

@@ -15,11 +15,11 @@ use crate::site::Site;
 use crate::withdrawal::{Sink, zone};
 
 use super::Question;
+use super::arrange::ways;
 use super::choices::{Choice, Choices, Levels, MOST_BLOCKS, Part};
 use super::curve::Curves;
-use super::goal::effort;
+use super::goal::Efforts;
 use super::seats::{Level, Member};
-use super::arrange::ways;
 use super::units::{State, Unit};
 
 /// The smallest miss of one limit, and how many mixes miss it.
@@ -58,6 +58,8 @@ pub(super) struct Offers {
     pub(super) misses: Vec<Miss>,
     /// Mixes there are.
     pub(super) examined: u64,
+    /// Whether every mix has a number, and every set of open outlets an index.
+    pub(super) numbered: bool,
 }
 
 /// What the offers are made from.
@@ -72,6 +74,7 @@ pub(super) struct Kitchen<'a> {
     pub(super) alone: &'a (dyn Fn(usize, f64) -> Option<usize> + Sync),
     /// Release shared out in each block, m3/s.
     pub(super) flows_m3s: [f64; MOST_BLOCKS],
+    pub(super) efforts: Efforts,
 }
 
 /// One state of a unit at one share, tried.
@@ -101,6 +104,7 @@ impl Kitchen<'_> {
             masks: Vec::new(),
             misses: Vec::new(),
             examined,
+            numbered: false,
         };
         for (u, unit) in self.units.iter().enumerate() {
             let others: Vec<Vec<u64>> =
@@ -108,14 +112,17 @@ impl Kitchen<'_> {
             let completions = ways(&others, steps);
             self.unit(unit, &completions, &mut out);
         }
-        number(&mut out);
+        out.numbered = number(&mut out).is_some();
         out
     }
 
     /// Adds the choices and misses of one unit; `completions[k]` counts what the others make of `k` steps.
     fn unit(&self, unit: &Unit, completions: &[u64], out: &mut Offers) {
         let steps = self.steps();
-        let mut choices = Choices { by_share: vec![Vec::new(); steps + 1], units: 1 << out.choices.len() };
+        let mut choices = Choices {
+            by_share: vec![Vec::new(); steps + 1],
+            units: if out.choices.len() < 64 { 1 << out.choices.len() } else { 0 },
+        };
         let mut codes = Vec::new();
         let mut masks: Vec<Vec<usize>> = Vec::new();
         let mut keep = |share: usize, state: Option<usize>, tried: Tried, misses: &mut Vec<Miss>| {
@@ -186,12 +193,18 @@ impl Kitchen<'_> {
                     }
                     None => 0.0,
                 };
-                limits::passing(site, o, if unit.spills_m3s.is_some() { 1.0 } else { 0.0 }, flow, pool_m, &mut checks);
-                (flow > 0.0).then_some((o, if unit.spills_m3s.is_some() { 1.0 } else { 0.0 }, [flow; MOST_BLOCKS]))
+                // what spills by itself is no choice, so it breaks nothing; a leak is no reserved flow
+                if unit.spills_m3s.is_none() {
+                    limits::passing(site, o, 0.0, 0.0, pool_m, &mut checks);
+                }
+                (flow > 0.0).then_some((
+                    o,
+                    if unit.spills_m3s.is_some() { 1.0 } else { 0.0 },
+                    [flow; MOST_BLOCKS],
+                ))
             })
             .collect();
-        // what spills by itself is no choice, so it breaks nothing
-        checks.retain(|c| c.broken() && unit.spills_m3s.is_none());
+        checks.retain(Check::broken);
         self.tried(unit, &flows, checks)
     }
 
@@ -222,16 +235,15 @@ impl Kitchen<'_> {
         let mut flows: Vec<(usize, f64, [f64; MOST_BLOCKS])> = Vec::new();
         for block in 0..blocks {
             let total = part * self.flows_m3s[block];
-            let mut give = |outlet: usize, opening: f64, flow: f64| {
-                match flows.iter_mut().find(|f| f.0 == outlet) {
+            let mut give =
+                |outlet: usize, opening: f64, flow: f64| match flows.iter_mut().find(|f| f.0 == outlet) {
                     Some(found) => found.2[block] = flow,
                     None => {
                         let mut by_block = [0.0; MOST_BLOCKS];
                         by_block[block] = flow;
                         flows.push((outlet, opening, by_block));
                     }
-                }
-            };
+                };
             match unit.well {
                 None => {
                     for (outlet, opening) in state.open(unit) {
@@ -245,7 +257,8 @@ impl Kitchen<'_> {
                     limits::well(site, well, open, total, head_m, &mut checks);
                     for gate in gates {
                         let Gate { outlet, opening, flow_m3s } = gate;
-                        limits::passing(site, outlet, opening, flow_m3s, pool_m, &mut checks);
+                        let given = if opening > 0.0 { flow_m3s } else { 0.0 };
+                        limits::passing(site, outlet, opening, given, pool_m, &mut checks);
                         give(outlet, opening, flow_m3s);
                     }
                     for &outlet in unit.outlets.iter().filter(|o| !flows.iter().any(|f| f.0 == **o)) {
@@ -280,17 +293,14 @@ impl Kitchen<'_> {
         };
         let supply = |k: usize, flow: f64| {
             let curve = (self.alone)(gates[k].0, gates[k].1).and_then(|c| self.levels.curves.get(c));
-            curve.map_or(
-                Entering { temperature_c: 0.0, salt_g_per_kg: 0.0, suspended_mg_l: 0.0 },
-                |curve| {
-                    let water = curve.at(flow);
-                    Entering {
-                        temperature_c: water.temperature_c,
-                        salt_g_per_kg: water.salt_g_per_kg,
-                        suspended_mg_l: water.suspended_mg_l,
-                    }
-                },
-            )
+            curve.map_or(Entering { temperature_c: 0.0, salt_g_per_kg: 0.0, suspended_mg_l: 0.0 }, |curve| {
+                let water = curve.at(flow);
+                Entering {
+                    temperature_c: water.temperature_c,
+                    salt_g_per_kg: water.salt_g_per_kg,
+                    suspended_mg_l: water.suspended_mg_l,
+                }
+            })
         };
         let Some(split) = shaft.split(&ports, total_m3s, supply) else { return (Vec::new(), None) };
         let assumed = gates.iter().any(|g| site.outlets[g.0].loss.is_none());
@@ -304,7 +314,12 @@ impl Kitchen<'_> {
     }
 
     /// The choice that some flows make; none where a limit is broken.
-    fn tried(&self, unit: &Unit, flows: &[(usize, f64, [f64; MOST_BLOCKS])], mut broken: Vec<Check>) -> Tried {
+    fn tried(
+        &self,
+        unit: &Unit,
+        flows: &[(usize, f64, [f64; MOST_BLOCKS])],
+        mut broken: Vec<Check>,
+    ) -> Tried {
         let lanes = self.levels.lanes;
         let mut choice = Choice {
             lanes: vec![0.0; lanes.count()],
@@ -320,6 +335,8 @@ impl Kitchen<'_> {
         for level in touched {
             let seat = &self.seats[level];
             let mine = || flows.iter().filter(|f| self.level_of[f.0] == level);
+            // what nobody sets draws what it draws
+            let set = mine().find(|f| f.1 > 0.0 && unit.spills_m3s.is_none()).map(|f| f.0);
             let code: usize = mine()
                 .map(|f| seat.code(f.0, if f.1 > 0.0 { Member::Open(f.1) } else { Member::Leak }))
                 .sum();
@@ -332,7 +349,7 @@ impl Kitchen<'_> {
             match seat.slot {
                 None => {
                     choice.unknown |= self.levels.add(seat.curves[code], &by_block, &mut choice.lanes);
-                    self.undrawn(mine().map(|f| f.0).next(), seat.curves[code], &by_block, &mut broken);
+                    self.undrawn(set, seat.curves[code], &by_block, &mut broken);
                 }
                 Some(slot) => {
                     let mut alone = vec![0.0; lanes.count()];
@@ -341,12 +358,13 @@ impl Kitchen<'_> {
                         *lane += add;
                     }
                     choice.slots |= 1 << slot;
-                    choice.parts.push(Part { slot, code, flows_m3s: by_block, alone, alone_unknown });
+                    let set = set.is_some();
+                    choice.parts.push(Part { slot, code, set, flows_m3s: by_block, alone, alone_unknown });
                 }
             }
         }
         for (rule, share) in self.site().limits.shares.iter().enumerate() {
-            for flow in flows.iter().filter(|f| share.outlets.contains(&f.0)) {
+            for flow in flows.iter().filter(|f| f.1 > 0.0 && share.outlets.contains(&f.0)) {
                 for block in 0..lanes.blocks {
                     choice.lanes[lanes.share(rule, block)] += flow.2[block];
                 }
@@ -366,7 +384,8 @@ impl Kitchen<'_> {
         broken: &mut Vec<Check>,
     ) {
         let site = self.site();
-        let (Some(outlet), Some((centre_m, opening))) = (outlet, curve.and_then(|c| self.levels.curves.sink(c)))
+        let (Some(outlet), Some((centre_m, opening))) =
+            (outlet, curve.and_then(|c| self.levels.curves.sink(c)))
         else {
             return;
         };
@@ -418,7 +437,7 @@ impl Kitchen<'_> {
         let mut checks = Vec::new();
         let moves = limits::moves(self.site(), &from, &to, &mut checks);
         let at = self.levels.lanes;
-        lanes[at.effort()] += effort(moves.cost, moves.crew_hours);
+        lanes[at.effort()] += self.efforts.effort(moves.cost, moves.crew_hours);
         lanes[at.hours()] += moves.crew_hours;
         lanes[at.moves()] += moves.count as f64;
         broken.extend(checks.into_iter().filter(Check::broken));
@@ -444,11 +463,15 @@ fn worst(mut broken: Vec<Check>) -> Vec<Check> {
     broken
 }
 
-/// Counts a broken limit, and keeps the smallest miss of each.
+/// Counts a broken limit, and keeps the smallest miss of each. What no mix holds is missed by none.
 fn note(misses: &mut Vec<Miss>, check: Check, count: u64, open: &[(usize, f64)]) {
-    match misses.iter_mut().find(|m| {
-        m.check.rule == check.rule && m.check.of == check.of && m.check.item == check.item
-    }) {
+    if count == 0 {
+        return;
+    }
+    match misses
+        .iter_mut()
+        .find(|m| m.check.rule == check.rule && m.check.of == check.of && m.check.item == check.item)
+    {
         Some(miss) => {
             miss.count = miss.count.saturating_add(count);
             if check.room > miss.check.room {
@@ -460,25 +483,28 @@ fn note(misses: &mut Vec<Miss>, check: Check, count: u64, open: &[(usize, f64)])
     }
 }
 
-/// Gives every choice its part of the number of a mix and of the index of ideas.
-fn number(offers: &mut Offers) {
-    let mut place = 1_u64;
+/// Gives every choice its part of the number of a mix and of the index of ideas. `None` where there are more than
+/// can be numbered: few steps among many parts make few mixes of many choices.
+fn number(offers: &mut Offers) -> Option<()> {
+    let (mut place, mut ideas) = (1_u64, 1_usize);
     let mut places = Vec::new();
     for codes in offers.codes.iter().rev() {
         places.push(place);
-        place = place.saturating_mul(codes.len().max(1) as u64);
+        place = place.checked_mul(codes.len().max(1) as u64)?;
     }
     places.reverse();
-    let mut ideas = 1_usize;
+    for masks in &mut offers.masks {
+        masks.1 = ideas;
+        ideas = ideas.checked_mul(masks.0.len().max(1))?;
+    }
     for (u, choices) in offers.choices.iter_mut().enumerate() {
-        offers.masks[u].1 = ideas;
         for choice in choices.by_share.iter_mut().flatten() {
             choice.number *= places[u];
-            choice.idea *= ideas;
+            choice.idea *= offers.masks[u].1;
         }
-        ideas = ideas.saturating_mul(offers.masks[u].0.len().max(1));
     }
     offers.places = places;
+    Some(())
 }
 
 /// Curve of an outlet that draws alone, for every opening it can have and for its leak.

@@ -123,10 +123,8 @@ fn walked(task: &Task, to_beat: &Found) -> Option<Found> {
         }
         found
     };
-    let found = (0..LOTS.min(first.len()))
-        .into_par_iter()
-        .map(lot)
-        .reduce(|| to_beat.clone(), |a, b| a.merge(&b));
+    let found =
+        (0..LOTS.min(first.len())).into_par_iter().map(lot).reduce(|| to_beat.clone(), |a, b| a.merge(&b));
     (!stopped.load(Ordering::Relaxed)).then_some(found)
 }
 
@@ -221,6 +219,9 @@ impl<'a> Walk<'a> {
                     continue;
                 }
                 let same = || head.parts[i..].iter().filter(|p| p.slot == part.slot);
+                if !same().any(|p| p.set) {
+                    continue;
+                }
                 let code: usize = same().map(|p| p.code).sum();
                 let kept = levels.slots[part.slot].kept_m3s[layer][code];
                 for block in 0..levels.lanes.blocks {
@@ -350,8 +351,7 @@ impl<'a> Walk<'a> {
         for (rule, missed) in self.task.rules.iter().zip(&mut found.missed) {
             let (miss, bound) = match *rule {
                 WholeRule::Solids(most) => {
-                    let worst =
-                        blocks.clone().map(|b| sum(lanes.solids(b)) / sum(3 * b)).fold(0.0, f64::max);
+                    let worst = blocks.clone().map(|b| sum(lanes.solids(b)) / sum(3 * b)).fold(0.0, f64::max);
                     (worst - most, most)
                 }
                 WholeRule::ShareMin(rule, least) => {
