@@ -244,6 +244,7 @@ fn failed(stop: &Stop) -> (String, End) {
             let lines: Vec<String> = problems.iter().map(|p| p.text(*system)).collect();
             (lines.join("\n") + "\n", End::Refused)
         }
+        Stop::Task(Failure::Stopped) => ("gatemix: stopped\n".to_owned(), End::Failed),
         Stop::Machine(problem) => (format!("{problem}\n"), End::Failed),
     }
 }

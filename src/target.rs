@@ -88,11 +88,31 @@ impl Statistic {
         Self::NAMES.iter().find(|(n, _)| *n == name).map(|(_, s)| *s)
     }
 
-    /// The value of the statistic under a release held steady: every statistic over time of a constant
-    /// is that constant.
-    pub fn of_steady(self, value: f64) -> f64 {
-        value
+    /// The statistic of temperatures that each hold for a share of the day, C; the shares sum to 1. One temperature all
+    /// day is itself by every statistic.
+    pub fn over(self, parts: &[(f64, f64)]) -> f64 {
+        let values = parts.iter().map(|p| p.1);
+        match self {
+            Self::DailyMean => mean(parts),
+            Self::DailyMin => values.fold(f64::INFINITY, f64::min),
+            Self::Instantaneous | Self::DailyMax | Self::SevenDayMeanOfMaxima => {
+                values.fold(f64::NEG_INFINITY, f64::max)
+            }
+        }
     }
+
+    /// The same of oxygen, mg/L: what the floor is held against is the mean where the rule speaks of one, else the
+    /// least.
+    pub fn oxygen_over(self, parts: &[(f64, f64)]) -> f64 {
+        match self {
+            Self::DailyMean => mean(parts),
+            _ => parts.iter().map(|p| p.1).fold(f64::INFINITY, f64::min),
+        }
+    }
+}
+
+fn mean(parts: &[(f64, f64)]) -> f64 {
+    parts.iter().map(|(share, value)| share * value).sum()
 }
 
 /// Where a value stands against a range.
@@ -146,6 +166,18 @@ pub struct Target {
 }
 
 impl Target {
+    /// What the rule is held against of temperatures that each hold for a share of the day, C: its statistic, and of
+    /// readings that are each to lie in the range the one farthest outside.
+    pub fn value_over(&self, parts: &[(f64, f64)]) -> f64 {
+        let greatest = self.statistic.over(parts);
+        if self.statistic != Statistic::Instantaneous {
+            return greatest;
+        }
+        let least = Statistic::DailyMin.over(parts);
+        let outside = |value: f64| self.temperature(Some(value)).1.unwrap_or(0.0);
+        if outside(least) > outside(greatest) { least } else { greatest }
+    }
+
     /// Lower end of the range the buffer leaves, C.
     pub fn low_kept_c(&self) -> Option<f64> {
         self.low_c.map(|t| t + self.buffer_c)

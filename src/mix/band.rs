@@ -232,12 +232,6 @@ impl Spread {
     pub fn band_oxygen_mg_l(&self) -> Option<(f64, f64)> {
         band(self.cases.iter().map(|c| c.1).collect::<Option<_>>()?)
     }
-
-    /// Share of the perturbed cases for which a test holds.
-    pub fn share(&self, holds: impl Fn(f64, Option<f64>) -> bool) -> Option<f64> {
-        let count = self.cases.iter().filter(|c| holds(c.0, c.1)).count();
-        (!self.cases.is_empty()).then(|| count as f64 / self.cases.len() as f64)
-    }
 }
 
 fn band(mut values: Vec<f64>) -> Option<(f64, f64)> {

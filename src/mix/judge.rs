@@ -6,7 +6,6 @@ use crate::intake;
 use crate::problem::Problem;
 use crate::profile::{Column, Profile};
 use crate::site::{Outlet, Site};
-use crate::target::{Standing, Target};
 use crate::units::{Dimension, say};
 use crate::withdrawal::CrestForm;
 
@@ -15,39 +14,10 @@ use super::beware;
 use super::blend::{Blend, Drawn, draw_levels, release};
 use super::levels::{Gate, Setting, groups, levels};
 use super::limits::{self, Check, Of, Whole};
+use super::standing::{TargetStanding, standings};
 
 /// Flow over an ungated crest set by hand may differ from its rating by this share (choice).
 const CREST_SHARE: f64 = 0.05;
-
-/// How the release stands against one target.
-#[derive(Debug, Clone, PartialEq)]
-pub struct TargetStanding {
-    /// Index in the site's targets.
-    pub target: usize,
-    /// Temperature by the rule's statistic, C.
-    pub value_c: Option<f64>,
-    /// Standing of the temperature and distance outside, C.
-    pub temperature: (Standing, Option<f64>),
-    /// Oxygen, mg/L.
-    pub oxygen_mg_l: Option<f64>,
-    /// Standing of the oxygen and distance below, mg/L.
-    pub oxygen: (Standing, Option<f64>),
-    /// Share of the perturbed cases inside the temperature range.
-    pub share_inside: Option<f64>,
-    /// Share of the perturbed cases above the oxygen minimum.
-    pub oxygen_share_inside: Option<f64>,
-    /// Share of the perturbed cases inside both.
-    pub share_inside_both: Option<f64>,
-    /// The strictest rule valid on that date.
-    pub governs: bool,
-}
-
-impl TargetStanding {
-    /// Whether either standing is a miss.
-    pub fn missed(&self) -> bool {
-        [self.temperature.0, self.oxygen.0].iter().any(|s| matches!(s, Standing::Below | Standing::Above))
-    }
-}
 
 /// A setting with everything computed from it.
 #[derive(Debug, Clone, PartialEq)]
@@ -147,7 +117,7 @@ pub fn judge(
         draw_levels(column, &levels(site, &groups, setting, profile.pool_m, 0.5, CrestForm::Overflow), 1.0);
     let release = release(&drawn)?;
     let spread = perturbed.spread(site, &groups, setting, &release);
-    let targets = standings(site, &release, &spread, date);
+    let targets = standings(site, &[(1.0, &release, &spread)], date);
     let limits = limits(site, column, setting, profile.pool_m, date, &drawn, &release);
     let mut warnings: Vec<Problem> = broken(site, &limits).collect();
     beware::zones(site, column, &drawn, &mut warnings);
@@ -160,52 +130,6 @@ pub fn judge(
     beware::cautions(site, column, &drawn, &mut warnings);
     let not_checked = limits::not_checked(site, column, setting, &drawn, &limits);
     Some(Mix { levels: drawn, release, spread, targets, limits, not_checked, warnings })
-}
-
-/// Standing of a release against every target valid on a date; the rule with the least room governs.
-fn standings(site: &Site, release: &Blend, spread: &Spread, date: NaiveDate) -> Vec<TargetStanding> {
-    // a case without oxygen is neither inside nor outside, so one such case leaves the shares unknown
-    let oxygen_known = release.oxygen_mg_l.is_some() && spread.cases.iter().all(|c| c.1.is_some());
-    let valid = |t: &&(usize, &Target)| t.1.span.contains(date);
-    let all: Vec<(usize, &Target)> = site.targets.iter().enumerate().collect();
-    let mut out: Vec<TargetStanding> = all
-        .iter()
-        .filter(valid)
-        .map(|&(target, rule)| {
-            let value_c = Some(rule.statistic.of_steady(release.temperature_c));
-            let inside = |s: (Standing, Option<f64>)| s.0 == Standing::Inside;
-            let floor = rule.oxygen_min_mg_l.is_some();
-            let has_range = rule.low_c.is_some() || rule.high_c.is_some();
-            let warm = |t: f64| !has_range || inside(rule.temperature(Some(t)));
-            let aired = |o: Option<f64>| rule.oxygen_min_mg_l.is_none() || inside(rule.oxygen(o));
-            TargetStanding {
-                target,
-                value_c,
-                temperature: rule.temperature(value_c),
-                oxygen_mg_l: release.oxygen_mg_l,
-                oxygen: rule.oxygen(release.oxygen_mg_l),
-                share_inside: if has_range { spread.share(|t, _| warm(t)) } else { None },
-                oxygen_share_inside: if floor && oxygen_known { spread.share(|_, o| aired(o)) } else { None },
-                share_inside_both: if floor && !oxygen_known {
-                    None
-                } else {
-                    spread.share(|t, o| warm(t) && aired(o))
-                },
-                governs: false,
-            }
-        })
-        .collect();
-    let room = |s: &TargetStanding| site.targets[s.target].room(s.value_c, s.oxygen_mg_l);
-    let strictest = out
-        .iter()
-        .enumerate()
-        .filter_map(|(i, s)| Some((i, room(s)?)))
-        .min_by(|a, b| a.1.total_cmp(&b.1))
-        .map(|(i, _)| i);
-    if let Some(i) = strictest {
-        out[i].governs = true;
-    }
-    out
 }
 
 /// Every limit that applies to a setting, by the names of outlets and wells.

@@ -6,10 +6,12 @@ mod blend;
 mod judge;
 mod levels;
 pub mod limits;
+mod standing;
 mod wells;
 
 pub use band::{GREATEST_LOSS, LEAST_LOSS, Member, Perturbed, Spread, members};
 pub use blend::{Blend, Drawn, blend, draw_levels, overlapping, release, release_joined};
-pub use judge::{Mix, TargetStanding, judge, refusals};
+pub use judge::{Mix, judge, refusals};
 pub use levels::{Gate, Level, Seat, Setting, as_one, groups, levels, seat};
+pub use standing::{Part, TargetStanding, standings};
 pub use wells::{Asked, WellState, port, resolve};

@@ -37,6 +37,7 @@ pub(super) fn arranged(
         idea: 0,
         number: 0,
         parts: Vec::new(),
+        slots: 0,
     });
     let mut head = Vec::new();
     let mut alone = Vec::new();

@@ -99,6 +99,16 @@ impl Found {
         self
     }
 
+    /// Enters a mix among the ends of what is attainable: temperature (C), and oxygen (mg/L) where it is known.
+    pub(super) fn ends(&mut self, temperature_c: f64, oxygen_mg_l: Option<f64>, number: u64) {
+        lower(&mut self.coldest, (temperature_c, number));
+        higher(&mut self.warmest, (temperature_c, number));
+        if let Some(oxygen) = oxygen_mg_l {
+            lower(&mut self.least_oxygen, (oxygen, number));
+            higher(&mut self.most_oxygen, (oxygen, number));
+        }
+    }
+
     /// Enters the oxygen of a mix at its distance from the preferred temperature, C.
     #[inline]
     pub(super) fn trade(&mut self, distance_c: f64, at: At) {

@@ -18,6 +18,7 @@ use super::Question;
 use super::arrange::ways;
 use super::choices::{Choice, Choices, Levels, MOST_BLOCKS, Part};
 use super::curve::Curves;
+use super::goal::effort;
 use super::seats::{Level, Member};
 use super::units::{State, Unit};
 
@@ -319,8 +320,14 @@ impl Kitchen<'_> {
         mut broken: Vec<Check>,
     ) -> Tried {
         let lanes = self.levels.lanes;
-        let mut choice =
-            Choice { lanes: vec![0.0; lanes.count()], unknown: false, idea: 0, number: 0, parts: Vec::new() };
+        let mut choice = Choice {
+            lanes: vec![0.0; lanes.count()],
+            unknown: false,
+            idea: 0,
+            number: 0,
+            parts: Vec::new(),
+            slots: 0,
+        };
         let mut touched: Vec<usize> = flows.iter().map(|f| self.level_of[f.0]).collect();
         touched.sort_unstable();
         touched.dedup();
@@ -349,6 +356,7 @@ impl Kitchen<'_> {
                     for (lane, add) in choice.lanes.iter_mut().zip(&alone) {
                         *lane += add;
                     }
+                    choice.slots |= 1 << slot;
                     let set = set.is_some();
                     choice.parts.push(Part { slot, code, set, flows_m3s: by_block, alone, alone_unknown });
                 }
@@ -428,7 +436,7 @@ impl Kitchen<'_> {
         let mut checks = Vec::new();
         let moves = limits::moves(self.site(), &from, &to, &mut checks);
         let at = self.levels.lanes;
-        lanes[at.cost()] += moves.cost;
+        lanes[at.effort()] += effort(moves.cost, moves.crew_hours, self.units.len());
         lanes[at.hours()] += moves.crew_hours;
         lanes[at.moves()] += moves.count as f64;
         broken.extend(checks.into_iter().filter(Check::broken));

@@ -4,7 +4,7 @@ use crate::mix::limits::{self, Check};
 use crate::mix::{Asked, Gate};
 
 use super::Question;
-use super::choices::{Levels, MOST_BLOCKS, Part};
+use super::choices::{Levels, MOST_BLOCKS, Part, shared};
 use super::offers::{Code, Offers};
 use super::units::Unit;
 use crate::withdrawal::{Sink, zone};
@@ -47,6 +47,17 @@ pub struct Extreme {
     pub mix: Ranked,
 }
 
+/// Mixes that draw through the same levels: near-duplicates of one idea.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Idea<'a> {
+    /// The best of them.
+    pub best: &'a Ranked,
+    /// Its key.
+    pub key: f64,
+    /// How many other sets of outlets draw through the same levels.
+    pub alike: usize,
+}
+
 /// A ranking.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Ranking {
@@ -74,14 +85,13 @@ pub struct Ranking {
 }
 
 impl Ranking {
-    /// The first mixes that differ in the levels they draw through, with how many other sets of outlets draw through
-    /// the same.
-    pub fn ideas(&self, top: usize) -> Vec<(&Ranked, usize)> {
-        let mut ideas: Vec<(&Ranked, usize)> = Vec::new();
-        for mix in &self.mixes {
-            match ideas.iter_mut().find(|(first, _)| first.levels == mix.levels) {
-                Some(idea) => idea.1 += 1,
-                None => ideas.push((mix, 0)),
+    /// The first mixes that differ in the levels they draw through.
+    pub fn ideas(&self, top: usize) -> Vec<Idea<'_>> {
+        let mut ideas: Vec<Idea> = Vec::new();
+        for (mix, &key) in self.mixes.iter().zip(&self.keys) {
+            match ideas.iter_mut().find(|idea| idea.best.levels == mix.levels) {
+                Some(idea) => idea.alike += 1,
+                None => ideas.push(Idea { best: mix, key, alike: 0 }),
             }
         }
         ideas.truncate(top);
@@ -202,7 +212,7 @@ impl Decoder<'_> {
             unknown |= choice.unknown;
             parts.extend(&choice.parts);
         }
-        unknown |= self.levels.join(&parts, &mut sums);
+        unknown |= self.levels.join(&parts, shared(&parts), &mut sums);
         let mean = |lane: usize| -> f64 {
             let weights = self.levels.weights.iter().enumerate();
             weights.map(|(b, w)| w * sums[3 * b + lane] / sums[3 * b]).sum()

@@ -13,11 +13,12 @@ use super::units::{Unit, openings};
 /// Most openings of the outlets of one level, all taken together (choice).
 const MOST_CODES: usize = 100_000;
 
-/// What an outlet is to its level: nothing, a leak, or an opening.
+/// Most levels that several units draw through: each is a bit.
+const MOST_SLOTS: usize = 64;
+
+/// What an outlet that draws is to its level.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub(super) enum Member {
-    /// It gives nothing.
-    Absent,
     /// Shut, and leaking.
     Leak,
     /// Open so far, 0 to 1.
@@ -49,7 +50,6 @@ impl Level {
                 };
                 return place
                     * match member {
-                        Member::Absent => 0,
                         Member::Leak => 1,
                         Member::Open(opening) => 2 + nearest(opening),
                     };
@@ -105,6 +105,13 @@ pub(super) fn levels(
                 slots += 1;
                 slots - 1
             });
+            if slots > MOST_SLOTS {
+                return Err(Problem::refused(
+                    "too-many",
+                    format!("more than {MOST_SLOTS} levels are shared by wells and outlets"),
+                    "leave gates out with --without",
+                ));
+            }
             let mut level = Level { outlets: outlets.clone(), openings, curves: Vec::new(), slot };
             level.curves = (0..count)
                 .map(|code| {

@@ -29,7 +29,7 @@ pub fn mix(context: &Context, words: &[Word]) -> Result<MixAnswer, Failure> {
             Failure::Usage(why) => Failure::Usage(format!(
                 "no setting: give --set GATE=FLOW, or --open GATE=PERCENT with --release FLOW; of the setting now, {why}"
             )),
-            refused @ Failure::Refused(..) => refused,
+            other => other,
         })?
     } else {
         setting(context, words)?
@@ -63,6 +63,7 @@ fn judged_now(
             }
         }
         Err(Failure::Usage(why)) => why,
+        Err(Failure::Stopped) => String::new(),
         Err(Failure::Refused(problems, _)) => problems.first().map_or_else(String::new, |p| p.words.clone()),
     };
     (None, Some(Problem::note("now-not-shown", format!("the setting now is not shown: {why}"))))

@@ -15,6 +15,7 @@ use crate::units::{Dimension, System};
 
 mod mix;
 mod pool;
+pub mod rank;
 mod setting;
 mod words;
 
@@ -28,6 +29,8 @@ pub use words::Word;
 pub enum Failure {
     /// The command line cannot be understood.
     Usage(String),
+    /// The caller stopped it.
+    Stopped,
     /// It can, but the files, or the files with these numbers, give no answer; with the units to say it in.
     Refused(Vec<Problem>, System),
 }

@@ -116,8 +116,8 @@ fn main() -> ExitCode {
                 ranking.mixes.len(),
                 ranking.rejected.len()
             );
-            for (mix, others) in ranking.ideas(10) {
-                println!("{:?} +{others} {:?}", mix.open, mix.asked[0]);
+            for idea in ranking.ideas(10) {
+                println!("{:?} +{} {:?}", idea.best.open, idea.alike, idea.best.asked[0]);
             }
         }
     }

@@ -81,7 +81,7 @@ proptest! {
 fn law_every_statistic_of_a_steady_release_is_the_release() {
     for (name, statistic) in Statistic::NAMES {
         assert_eq!((statistic.name(), Statistic::parse(name)), (name, Some(statistic)));
-        assert_abs_diff_eq!(statistic.of_steady(11.3), 11.3, epsilon = 0.0);
+        assert_abs_diff_eq!(statistic.over(&[(1.0, 11.3)]), 11.3, epsilon = 0.0);
     }
     assert_eq!(Statistic::parse("weekly"), None);
 }

@@ -14,7 +14,7 @@ use std::collections::HashSet;
 use crate::units::Dimension;
 
 pub use gates::{head, level, passing, still, well};
-pub use moves::{Moves, moves};
+pub use moves::{Moves, is_moved, moves};
 pub use unchecked::not_checked;
 pub use whole::{Before, Whole, change, change_times, whole};
 

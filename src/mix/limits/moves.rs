@@ -30,7 +30,7 @@ pub struct Moves {
 pub fn moves(site: &Site, now: &Setting, to: &Setting, out: &mut Vec<Check>) -> Moves {
     let mut moves = Moves::default();
     for (index, outlet) in site.outlets.iter().enumerate() {
-        let moved = moved(outlet, set(site, now, index), set(site, to, index));
+        let moved = is_moved(outlet, set(site, now, index), set(site, to, index));
         if moved {
             moves.count += 1;
             moves.cost += outlet.crew.cost;
@@ -46,7 +46,8 @@ pub fn moves(site: &Site, now: &Setting, to: &Setting, out: &mut Vec<Check>) -> 
     moves
 }
 
-fn moved(outlet: &Outlet, now: (f64, f64), to: (f64, f64)) -> bool {
+/// Whether an outlet moves from one opening (0 to 1) and flow (m3/s) to another.
+pub fn is_moved(outlet: &Outlet, now: (f64, f64), to: (f64, f64)) -> bool {
     if intake::spills_by_itself(outlet) {
         return false;
     }

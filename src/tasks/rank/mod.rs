@@ -1,0 +1,162 @@
+//! Which mixes fit, in what order, and why not the rest.
+
+mod answers;
+mod asked;
+mod reasons;
+mod shown;
+
+use std::ops::ControlFlow;
+
+use crate::mix::limits::Before;
+use crate::mix::{Perturbed, Setting, groups};
+use crate::problem::Problem;
+use crate::rank::{Criterion, Question, Ranking, Stopped, rank as search};
+
+use super::words::Word;
+use super::{Context, Failure, now_setting, setting};
+
+pub use answers::{Least, Lost, Pocket, PreferredSplit, Root, Trade};
+pub use asked::{RankAsked, ReleaseFrom};
+pub use shown::{Move, Shown, Unsure};
+
+use answers::Answers;
+use shown::Kitchen;
+
+/// The answer of `rank`.
+#[derive(Debug, Clone)]
+pub struct RankAnswer {
+    /// Parts of the day: share of it and total release, m3/s; one for a steady day.
+    pub blocks: Vec<(f64, f64)>,
+    /// Where the release comes from.
+    pub release_from: ReleaseFrom,
+    /// Steps the release is cut into.
+    pub steps: usize,
+    /// Criteria, the first first.
+    pub order: Vec<Criterion>,
+    /// Outlets left out.
+    pub without: Vec<usize>,
+    /// What the search found.
+    pub ranking: Ranking,
+    /// The best mix of each idea, best first, computed in full.
+    pub mixes: Vec<Shown>,
+    /// The setting now, unchanged, with what it gives today.
+    pub now: Option<Shown>,
+    /// Largest difference between the search and the full computation, over every mix shown: C and mg/L.
+    pub apart: (f64, Option<f64>),
+    /// Coldest and warmest allowed release, computed in full, C.
+    pub attainable_c: Option<[f64; 2]>,
+    /// Least and most oxygen of allowed releases, computed in full, mg/L.
+    pub attainable_oxygen_mg_l: Option<[f64; 2]>,
+    /// Mixes no other beats in both temperature and oxygen.
+    pub trade: Vec<Trade>,
+    /// The best fallback for each single gate lost, of those the best mix or the setting now uses.
+    pub lost: Vec<Lost>,
+    /// The exact split that gives the preferred temperature.
+    pub split: Option<PreferredSplit>,
+    /// Least total release with which some mix keeps every target.
+    pub least: Option<Least>,
+    /// What more release does to the best mix.
+    pub pocket: Option<Pocket>,
+    /// What was assumed.
+    pub notes: Vec<Problem>,
+}
+
+/// Ranks every mix of a site. `progress` is told how much is done and may stop it.
+///
+/// # Errors
+/// Words that cannot be understood; more mixes than can be judged; a caller who stops it ([`Failure::Stopped`]).
+pub fn rank(
+    context: &Context,
+    asked: &RankAsked,
+    progress: &(dyn Fn(f64) -> ControlFlow<()> + Sync),
+) -> Result<RankAnswer, Failure> {
+    let site = context.site();
+    let plan = asked::plan(context, asked)?;
+    let mut notes = plan.notes;
+    let now = match &asked.now[..] {
+        [] => now_setting(context),
+        words => {
+            let words: Vec<Word> = words.iter().map(|w| Word::Now(w)).collect();
+            setting(context, &words)
+        }
+    };
+    let now: Option<Setting> = match now {
+        Ok(understood) => {
+            notes.extend(understood.notes);
+            Some(understood.setting)
+        }
+        Err(failure) if !asked.now.is_empty() => return Err(failure),
+        Err(failure) => {
+            notes.push(no_now(failure));
+            None
+        }
+    };
+    let (blocks, release_from) = asked::release(context, asked, now.as_ref())?;
+    let perturbed = Perturbed::new(site, &context.profile, context.age_days);
+    let groups = groups(site);
+    let date = context.on.date_naive();
+    let mut kitchen = Kitchen { context, perturbed: &perturbed, groups: &groups, date, now: now.as_ref(), before: Before::default() };
+    let now_shown = now.as_ref().and_then(|setting| kitchen.now(setting));
+    if let Some(shown) = &now_shown {
+        kitchen.before = Before {
+            flow_m3s: Some(shown.parts.iter().map(|p| p.share * p.mix.release.flow_m3s).sum()),
+            temperature_c: Some(shown.temperature_c),
+        };
+    }
+    let question = Question {
+        site,
+        profile: &context.profile,
+        date,
+        blocks: &blocks,
+        now: now.as_ref(),
+        before: kitchen.before,
+        steps: plan.steps,
+        order: &plan.order,
+        without: &plan.without,
+    };
+    let ranking = search(&question, progress).map_err(|stopped| match stopped {
+        Stopped::Cancelled => Failure::Stopped,
+        Stopped::Refused(problem) => Failure::Refused(vec![problem], context.system),
+    })?;
+    let answers = Answers { kitchen: &kitchen, question: &question, ranking: &ranking };
+    let mixes = answers.mixes(asked.top);
+    let extremes = |found: &Option<[crate::rank::Extreme; 2]>| {
+        found.as_ref().map(|f| f.each_ref().map(|e| kitchen.release(&e.mix)))
+    };
+    let (coldest, oxygen) = (extremes(&ranking.attainable_c), extremes(&ranking.attainable_oxygen_mg_l));
+    let trade = answers.trade();
+    let lost = answers.lost();
+    let apart = answers.apart(&mixes, &trade);
+    Ok(RankAnswer {
+        attainable_c: coldest.and_then(|[a, b]| Some([a?.0, b?.0])),
+        attainable_oxygen_mg_l: oxygen.and_then(|[a, b]| Some([a?.1?, b?.1?])),
+        split: answers.preferred_split(),
+        least: answers.least(progress),
+        pocket: answers.pocket(),
+        blocks,
+        release_from,
+        steps: plan.steps,
+        order: plan.order.clone(),
+        without: plan.without.clone(),
+        mixes,
+        now: now_shown,
+        apart,
+        trade,
+        lost,
+        notes,
+        ranking,
+    })
+}
+
+/// Why there is no setting now, plainly.
+fn no_now(failure: Failure) -> Problem {
+    let why = match failure {
+        Failure::Usage(why) => why,
+        Failure::Refused(problems, _) => problems.first().map_or_else(String::new, |p| p.words.clone()),
+        Failure::Stopped => String::new(),
+    };
+    Problem::note(
+        "now-unknown",
+        format!("the setting now is not known ({why}): moves are not counted and rates of change not checked"),
+    )
+}
