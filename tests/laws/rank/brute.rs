@@ -76,7 +76,7 @@ pub(super) fn summed(works: &Works) -> Sum {
         missed.0 += 1;
         missed.1 = missed.1.max(check.room);
     };
-    every_mix(works, works.question.steps, &mut Vec::new(), &mut |number| {
+    every_mix(works, works.steps, &mut Vec::new(), &mut |number| {
         sum.examined += 1;
         let judged = works.judge(number);
         hopeless.iter().for_each(|check| note(&mut sum.broken, check));
@@ -237,7 +237,6 @@ struct Tally {
     with_none_allowed: usize,
     mixes: u64,
     refused_casts: usize,
-    spilling_over: usize,
     too_many: usize,
     at_edge: usize,
     rules: BTreeSet<Rule>,
@@ -251,12 +250,7 @@ fn try_case(case: &Case, tally: &mut Tally) {
     };
     let question = case.question(&dam);
     let works = Works::new(&question);
-    if works.shared_out_m3s.iter().any(|flow| *flow <= 0.0) {
-        assert!(matches!(ranked(&question), Err(Stopped::Refused(p)) if p.kind == "spills"));
-        tally.spilling_over += 1;
-        return;
-    }
-    if count(&works, question.steps) > MOST_MIXES {
+    if count(&works, works.steps) > MOST_MIXES {
         tally.too_many += 1;
         return;
     }
@@ -277,6 +271,7 @@ fn try_case(case: &Case, tally: &mut Tally) {
         ("two wells", dam.site.wells.len() == 2),
         ("shared levels", levels),
         ("shared levels that draw a layer", !sum.drawn.is_empty()),
+        ("spilling all or more", works.shared_out_m3s.contains(&0.0)),
         ("spilling", works.parts.iter().any(|p| p.spills_m3s.is_some())),
         ("unknown oxygen", allowed(&|w| w.oxygen_mg_l.is_none())),
         (
