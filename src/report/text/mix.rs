@@ -127,7 +127,7 @@ fn against_now(site: &Site, now: &Setting, was: &Mix, tried: &Mix, system: Syste
     out
 }
 
-fn range(rule: &Target, system: System) -> String {
+pub(super) fn range(rule: &Target, system: System) -> String {
     let unit = system.unit(Dimension::Temperature);
     let mut parts = Vec::new();
     match (rule.low_c, rule.high_c) {

@@ -18,15 +18,15 @@ pub(super) fn reasons(site: &Site, shown: &Shown, behind: Option<Option<Criterio
         out.extend(air(rule, standing));
     }
     if let (Some(cold), Some(threshold)) = (shown.cold_m3_per_day, site.cold_water_c.first()) {
-        let flow_m3: f64 = shown.parts.iter().map(|p| p.share * p.mix.release.flow_m3s * 86_400.0).sum();
+        let share = cold / (86_400.0 * shown.flow_m3s);
         out.push(format!(
             "takes {} a day colder than {}, {:.0} % of the release",
             say::m3(cold, 0),
             say::c(*threshold, 1),
-            100.0 * cold / flow_m3
+            100.0 * share
         ));
     }
-    if let Some(moves) = shown.moves {
+    if let Some(moves) = shown.change.as_ref().map(|c| c.moves) {
         let crew = if moves.crew_hours > 0.0 {
             format!(", {:.1} crew hours", moves.crew_hours)
         } else {
