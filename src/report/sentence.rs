@@ -30,5 +30,5 @@ pub(super) fn unsure_words(site: &Site, unsure: &Unsure) -> String {
         Some((t, None)) => format!("{}, oxygen unknown", say::c(t, 1)),
         Some((t, Some(oxygen))) => format!("{}, oxygen {oxygen:.1} mg/L", say::c(t, 1)),
     };
-    format!("{name} is taken as {taken}, not confirmed; if it is {otherwise}: {gives}")
+    format!("{name} is not confirmed {taken}; if it is {otherwise}: {gives}")
 }

@@ -49,7 +49,6 @@ pub fn mix(context: &Context, answer: &MixAnswer) -> String {
 pub fn rank(context: &Context, answer: &RankAnswer) -> String {
     let mut out = head(context, &context.fingerprint);
     out.push_str(&rank::body(context, answer));
-    out.push_str(&rank::not_checked(answer));
     out.push_str(&wrapped(caution(), 0));
     out
 }

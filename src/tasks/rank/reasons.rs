@@ -14,8 +14,10 @@ pub(super) fn reasons(site: &Site, shown: &Shown, behind: Option<Option<Criterio
     let mut out = Vec::new();
     for standing in shown.targets.iter().filter(|s| s.governs || s.missed()) {
         let rule = &site.targets[standing.target];
-        out.extend(warmth(rule, standing));
-        out.extend(air(rule, standing));
+        let words: Vec<String> = [warmth(rule, standing), air(rule, standing)].into_iter().flatten().collect();
+        if !words.is_empty() {
+            out.push(format!("{}: {}", rule.name, words.join(", ")));
+        }
     }
     if let (Some(cold), Some(threshold)) = (shown.cold_m3_per_day, site.cold_water_c.first()) {
         let share = cold / (86_400.0 * shown.flow_m3s);
@@ -59,38 +61,32 @@ fn words(criterion: Criterion) -> &'static str {
 
 fn warmth(rule: &Target, standing: &TargetStanding) -> Option<String> {
     let value = standing.value_c?;
-    let name = &rule.name;
     let by = standing.temperature.1.unwrap_or(0.0);
+    let shown = say::c(value, 1);
     match standing.temperature.0 {
         Standing::Unknown => None,
-        Standing::Below => {
-            Some(format!("{name}: {} is {} too cold", say::c(value, 1), say::dc(by, 1)))
-        }
-        Standing::Above => {
-            Some(format!("{name}: {} is {} too warm", say::c(value, 1), say::dc(by, 1)))
-        }
+        Standing::Below => Some(format!("{shown} is {} too cold", say::dc(by, 1))),
+        Standing::Above => Some(format!("{shown} is {} too warm", say::dc(by, 1))),
         Standing::Inside => Some(match rule.preferred_c {
             Some(preferred) => format!(
-                "{name}: {} is inside its range, {} from the preferred {}",
-                say::c(value, 1),
+                "{shown} is inside its range, {} from the preferred {}",
                 say::dc((value - preferred).abs(), 1),
                 say::c(preferred, 1)
             ),
-            None => format!("{name}: {} is inside its range", say::c(value, 1)),
+            None => format!("{shown} is inside its range"),
         }),
     }
 }
 
 fn air(rule: &Target, standing: &TargetStanding) -> Option<String> {
     let floor = rule.oxygen_min_mg_l?;
-    let name = &rule.name;
     Some(match (standing.oxygen_mg_l, standing.oxygen.0) {
         (Some(oxygen), Standing::Below) => {
-            format!("{name}: oxygen {oxygen:.1} mg/L is {:.1} mg/L below its floor", floor - oxygen)
+            format!("oxygen {oxygen:.1} mg/L is {:.1} mg/L below its floor", floor - oxygen)
         }
         (Some(oxygen), Standing::Inside) => {
-            format!("{name}: oxygen {oxygen:.1} mg/L keeps its floor of {floor:.1} mg/L")
+            format!("oxygen {oxygen:.1} mg/L keeps its floor of {floor:.1} mg/L")
         }
-        _ => format!("{name}: oxygen is not known"),
+        _ => "oxygen is not known".to_owned(),
     })
 }

@@ -17,23 +17,26 @@ use crate::report::text::{WIDTH, fitted, wrapped};
 
 /// Cells of a line; the second, the gates, takes what the others leave.
 type Cells = [String; 7];
+/// What the columns hold.
+const CAPTION: &str =
+    "10-90% and `in`, the share inside, are of our perturbed cases; moves with crew hours";
 /// Least width left to the gates.
 const GATES: usize = 16;
 
 /// ```text
-/// no  gates (flows in cfs)          water F (10-90 %)   O2  standing  cases  moves
-/// now N3 100%, S3 100%              54.6 (53.4-56.0)   7.1  inside      66%
-///   1 N3 100%, S3 100%, Sluice 180  52.9 (51.8-54.2)   7.0  inside      58%  1, 0.5 h
+///  no gates (flows in cfs)          water F 10-90%  O2 stands  in moves
+/// now N3 100%, S3 100%              54.6 53.5-56.1 7.1 inside 55% 0
+///   1 N3 100%, S3 100%, Sluice 180  52.9 51.8-54.2 7.0 inside 58% 1 0.5h
 /// ```
 pub(super) fn list(context: &Context, answer: &RankAnswer) -> String {
     let system = context.system;
     let heading = [
         "no".to_owned(),
         format!("gates (flows in {})", system.unit(Dimension::Flow).symbol()),
-        format!("water {} (10-90 %)", system.unit(Dimension::Temperature).symbol()),
+        format!("water {} 10-90%", system.unit(Dimension::Temperature).symbol()),
         "O2".to_owned(),
-        "standing".to_owned(),
-        "cases".to_owned(),
+        "stands".to_owned(),
+        "in".to_owned(),
         "moves".to_owned(),
     ];
     let mut rows: Vec<(Cells, Vec<String>)> = vec![(heading, Vec::new())];
@@ -47,7 +50,7 @@ pub(super) fn list(context: &Context, answer: &RankAnswer) -> String {
     if rows.len() == 1 {
         return String::new();
     }
-    table(&rows)
+    table(&rows) + &wrapped(CAPTION, 0)
 }
 
 fn cells(context: &Context, number: &str, shown: &Shown) -> Cells {
@@ -55,12 +58,12 @@ fn cells(context: &Context, number: &str, shown: &Shown) -> Cells {
     let unit = system.unit(Dimension::Temperature);
     let mut water = figure(shown.temperature_c, unit, 1);
     if let Some((low, high)) = shown.spread.band_c() {
-        let _ = write!(water, " ({}-{})", figure(low, unit, 1), figure(high, unit, 1));
+        let _ = write!(water, " {}-{}", figure(low, unit, 1), figure(high, unit, 1));
     }
     let share = shown.governing().and_then(|s| s.share_inside_both);
     let moves = shown.change.as_ref().map(|c| {
         let hours = in_hours(c.moves.crew_hours);
-        if hours.is_empty() { c.moves.count.to_string() } else { format!("{}, {hours}", c.moves.count) }
+        if hours.is_empty() { c.moves.count.to_string() } else { format!("{} {hours}", c.moves.count) }
     });
     [
         number.to_owned(),
@@ -73,9 +76,9 @@ fn cells(context: &Context, number: &str, shown: &Shown) -> Cells {
     ]
 }
 
-/// `0.5 h`, nothing for none.
+/// `0.5h`, nothing for none.
 fn in_hours(hours: f64) -> String {
-    if hours > 0.0 { format!("{hours:.1}").trim_end_matches(".0").to_owned() + " h" } else { String::new() }
+    if hours > 0.0 { format!("{hours:.1}").trim_end_matches(".0").to_owned() + "h" } else { String::new() }
 }
 
 /// Limits that a mix computed in full breaks though the search took it for one that keeps them, or that the setting

@@ -7,11 +7,12 @@ mod refused;
 
 use std::fmt::Write as _;
 
-use crate::problem::harmless;
+use crate::problem::{Problem, Weight, harmless};
+use crate::rank::Criterion;
 use crate::target::Target;
 use crate::tasks::Context;
 use crate::tasks::rank::{NothingFits, RankAnswer, Shown};
-use crate::units::{System, in_system};
+use crate::units::{Dimension, System, show};
 
 use super::mix::range;
 use super::{flow, labelled, oxygen, step, temperature, wrapped};
@@ -33,27 +34,39 @@ pub(super) fn body(context: &Context, answer: &RankAnswer) -> String {
         out.push_str(&wrapped(&words, 0));
     }
     out.push_str(&list::list(context, answer));
-    out.push('\n');
     if let Some(best) = answer.mixes.first() {
         out.push_str(&below::best(context, best));
     }
     out.push_str(&below::answers(context, answer));
     out.push_str(&refused::rejected(context, answer));
     out.push_str(&examined(answer, system));
-    for note in &answer.notes {
-        out.push_str(&labelled("Taken", &note.advice(system)));
+    for note in answer.notes.iter().chain(flags(&context.profile.flags)) {
+        out.push_str(&labelled("Note", &note.advice(system)));
+    }
+    if let Some(best) = answer.mixes.first() {
+        out.push_str(&not_checked(context, best));
     }
     out
 }
 
-/// Limits that nobody gave or that what is known does not reach, over the mixes listed, each once.
-pub(super) fn not_checked(answer: &RankAnswer) -> String {
-    let shown: &[Shown] = answer.mixes.get(..1).unwrap_or_default();
-    let told: Vec<&str> = shown.iter().flat_map(|s| &s.not_checked).map(String::as_str).collect();
+/// What to beware of, without what was merely assumed.
+fn flags(problems: &[Problem]) -> impl Iterator<Item = &Problem> {
+    problems.iter().filter(|p| p.weight == Weight::Flag)
+}
+
+/// Limits of the best mix that nobody gave or that what is known does not reach; which gates they are missing for only
+/// where that is not all of its open gates.
+fn not_checked(context: &Context, best: &Shown) -> String {
+    let mut open: Vec<&str> =
+        best.day.gates.iter().map(|g| context.site().outlets[g.outlet].name.as_str()).collect();
+    open.sort_unstable();
+    let all = format!(" of {}", open.join(", "));
+    let told: Vec<&str> =
+        best.not_checked.iter().map(|words| words.strip_suffix(all.as_str()).unwrap_or(words)).collect();
     if told.is_empty() {
         return String::new();
     }
-    wrapped(&format!("Not checked for no. 1: {}", harmless(&told.join("; "))), 13)
+    wrapped(&format!("Not checked: {}", harmless(&told.join("; "))), 13)
 }
 
 fn asked(context: &Context, answer: &RankAnswer) -> String {
@@ -67,10 +80,12 @@ fn asked(context: &Context, answer: &RankAnswer) -> String {
             blocks.iter().enumerate().map(one).collect::<Vec<_>>().join(", ")
         }
     };
-    let _ = write!(out, " ({}), split by {:.3}", answer.release_from.words(), 100.0 / answer.steps as f64);
+    let _ = write!(out, " ({}), split in steps of {:.3}", answer.release_from.words(), 100.0 / answer.steps as f64);
     let mut out = out.trim_end_matches('0').trim_end_matches('.').to_owned() + " %";
-    let by: Vec<&str> = answer.order.iter().map(|c| c.name()).collect();
-    let _ = write!(out, "; by {}", by.join(", "));
+    if answer.order != Criterion::NAMES.map(|c| c.1) {
+        let by: Vec<&str> = answer.order.iter().map(|c| c.name()).collect();
+        let _ = write!(out, "; ordered by {}", by.join(", "));
+    }
     if !answer.without.is_empty() {
         let names: Vec<&str> =
             answer.without.iter().map(|&o| context.site().outlets[o].name.as_str()).collect();
@@ -90,7 +105,8 @@ fn nothing_fits(context: &Context, answer: &RankAnswer) -> Option<String> {
         (NothingFits::NoneReaches, Some(nearest)) => {
             format!("No mix examined reaches every target. Nearest: {}", nearly(context, nearest))
         }
-        _ => "No mix is allowed: every mix examined breaks a limit. Each limit and its smallest miss:".into(),
+        _ => "No mix is allowed: every one examined breaks a limit. What rejects them, with its smallest miss, stands below."
+            .into(),
     };
     Some(words)
 }
@@ -116,25 +132,20 @@ fn nearly(context: &Context, nearest: &Shown) -> String {
 fn examined(answer: &RankAnswer, system: System) -> String {
     let r = &answer.ranking;
     let mut words = format!(
-        "{} mixes = {} judged + {} passed over with proof; {} allowed",
+        "{} mixes: {} judged, {} passed over with proof; {} allowed",
         grouped(r.examined),
         grouped(r.judged),
         grouped(r.skipped),
         grouped(r.allowed)
     );
     if !answer.mixes.is_empty() {
-        let _ = write!(words, "; the search is off by at most {}", precise(answer.apart.0, system));
+        let apart = show(answer.apart.0, Dimension::TemperatureDifference, system, 3);
+        let _ = write!(words, "; search and full computation differ by at most {apart}");
         if let Some(oxygen) = answer.apart.1 {
             let _ = write!(words, " and {oxygen:.3} mg/L");
         }
-        words.push_str(" in what is shown");
     }
     labelled("Examined", &words)
-}
-
-/// A temperature difference to a thousandth.
-fn precise(c: f64, system: System) -> String {
-    in_system(&crate::units::say::dc(c, 3).to_string(), system)
 }
 
 /// `77,991,781`.

@@ -1,18 +1,23 @@
 //! Limits that reject mixes: a line for each, with its smallest miss.
 
-use crate::mix::limits::{Of, Rule};
+use std::fmt::Write as _;
+
+use crate::mix::limits::{Group, Of, Rule};
 use crate::problem::harmless;
 use crate::rank::Rejected;
 use crate::tasks::Context;
 use crate::tasks::rank::RankAnswer;
 use crate::units::in_system;
 
-use super::{grouped, labelled};
+use super::{grouped, wrapped};
 
-/// Lines shown before the rest is counted.
+/// Width of the count.
+const COUNT: usize = 11;
+/// Limits shown before the rest is counted.
 const LINES: usize = 8;
 
-/// Limits by group; one rule of several outlets or wells is told by the one that is missed least.
+/// Limits by group; a rule of several outlets or wells is told by the one that is missed least, its
+/// count that of the one that rejects most.
 pub(super) fn rejected(context: &Context, answer: &RankAnswer) -> String {
     let mut rules: Vec<(Rule, Vec<&Rejected>)> = Vec::new();
     for r in &answer.ranking.rejected {
@@ -22,18 +27,23 @@ pub(super) fn rejected(context: &Context, answer: &RankAnswer) -> String {
         }
     }
     let mut out = String::new();
-    for (at, (rule, list)) in rules.iter().take(LINES).enumerate() {
-        let group = rule.group().words();
-        let label = if at == 0 { "Rejected" } else { "" };
-        out.push_str(&labelled(label, &format!("{group}: {}", told(context, list))));
+    let mut before: Option<Group> = None;
+    for (rule, list) in rules.iter().take(LINES) {
+        let group = rule.group();
+        if before != Some(group) {
+            let _ = writeln!(out, "Rejected by {} limits: mixes, and the nearest miss", group.words());
+            before = Some(group);
+        }
+        out.push_str(&told(context, answer, list));
     }
     if rules.len() > LINES {
-        out.push_str(&labelled("", &format!("and {} more: --json", rules.len() - LINES)));
+        let _ = writeln!(out, "{:COUNT$}  and {} more: --json", "", rules.len() - LINES);
     }
     out
 }
 
-fn told(context: &Context, list: &[&Rejected]) -> String {
+/// One line: how many mixes, the nearest miss in words, where else.
+fn told(context: &Context, answer: &RankAnswer, list: &[&Rejected]) -> String {
     let site = context.site();
     let Some(nearest) = list.iter().max_by(|a, b| a.check.room.total_cmp(&b.check.room)) else {
         return String::new();
@@ -42,13 +52,12 @@ fn told(context: &Context, list: &[&Rejected]) -> String {
     if let (Rule::Outage, Of::Outlet(outlet)) = (nearest.check.rule, nearest.check.of)
         && let Some(day) = site.limits.in_use_from(outlet, context.on.date_naive())
     {
-        words.push_str(&format!(", possible from {day}"));
+        let _ = write!(words, ", possible from {day}");
     }
-    let count = list.iter().map(|r| r.count).max().unwrap_or(0);
-    if list.len() == 1 {
-        return format!("{words}: {} mixes", grouped(count));
+    if list.len() > 1 {
+        let _ = write!(words, "; and {} more", list.len() - 1);
     }
-    let others: Vec<&str> =
-        list.iter().filter(|r| !std::ptr::eq(**r, *nearest)).filter_map(|r| r.check.of.name(site)).collect();
-    format!("{words}; farther off at {}: up to {} mixes each", harmless(&others.join(", ")), grouped(count))
+    let most = list.iter().map(|r| r.count).max().unwrap_or(0);
+    let count = if most == answer.ranking.examined { "every mix".to_owned() } else { grouped(most) };
+    wrapped(&format!("{count:>COUNT$}  {words}"), COUNT + 4)
 }
