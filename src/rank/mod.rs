@@ -12,6 +12,7 @@ mod ranking;
 mod search;
 mod seats;
 mod tail;
+mod tries;
 mod units;
 
 use chrono::NaiveDate;
@@ -27,10 +28,11 @@ use arrange::ways;
 use choices::{Lanes, Levels, MOST_BLOCKS, Slot};
 use found::Found;
 use goal::Goal;
-use offers::{Kitchen, Offers};
+use offers::Offers;
 use ranking::Decoder;
 use search::{Task, WholeRule};
 use seats::Level;
+use tries::Kitchen;
 
 pub use curve::{Curve, Curves, Water};
 pub use goal::Criterion;
@@ -88,7 +90,7 @@ pub fn rank(question: &Question, progress: Progress) -> Result<Ranking, Stopped>
     let mut curves = Curves::default();
     let seats =
         seats::levels(site, &groups, &units, profile.pool_m, &mut curves).map_err(Stopped::Refused)?;
-    let alone = offers::alone(site, &units, &mut curves);
+    let alone = tries::alone(site, &units, &mut curves);
     let spilt: f64 = units.iter().filter_map(|u| u.spills_m3s).sum();
     let mut flows_m3s = [0.0; MOST_BLOCKS];
     for (flow, block) in flows_m3s.iter_mut().zip(question.blocks) {
@@ -162,16 +164,11 @@ pub fn rank(question: &Question, progress: Progress) -> Result<Ranking, Stopped>
 }
 
 /// What was found, as mixes with names.
-fn assembled(
-    decoder: &Decoder,
-    found: &Found,
-    told: &[Told],
-    offers: &Offers,
-    to_judge: u64,
-) -> Ranking {
+fn assembled(decoder: &Decoder, found: &Found, told: &[Told], offers: &Offers, to_judge: u64) -> Ranking {
     let mut best: Vec<(f64, u64)> = found.best.iter().copied().filter(|b| b.1 != u64::MAX).collect();
     best.sort_by(|a, b| a.0.total_cmp(&b.0).then(a.1.cmp(&b.1)));
-    let extreme = |at: (f64, u64)| (at.1 != u64::MAX).then(|| Extreme { value: at.0, mix: decoder.mix(at.1) });
+    let extreme =
+        |at: (f64, u64)| (at.1 != u64::MAX).then(|| Extreme { value: at.0, mix: decoder.mix(at.1) });
     let both = |low, high| Some([extreme(low)?, extreme(high)?]);
     let mut rejected: Vec<Rejected> = offers
         .misses
@@ -334,7 +331,9 @@ fn hopeless(question: &Question) -> Vec<Check> {
         out.extend(checks.into_iter().filter(|c| c.broken() && (c.rule == Rule::Drawdown) == of_a_day));
     };
     against(mean, true);
-    blocks.iter().for_each(|b| against(b.1, false));
+    for block in blocks {
+        against(block.1, false);
+    }
     out.sort_by(|a, b| a.rule.cmp(&b.rule).then(a.room.total_cmp(&b.room)));
     out.dedup_by_key(|c| c.rule);
     out

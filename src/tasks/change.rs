@@ -63,8 +63,13 @@ fn moved(site: &Site, now: &Setting, to: &Setting) -> Vec<Move> {
     (0..site.outlets.len())
         .filter_map(|outlet| {
             let ((from, from_m3s), (to, to_m3s)) = (at(now, outlet), at(to, outlet));
-            limits::is_moved(&site.outlets[outlet], (from, from_m3s), (to, to_m3s))
-                .then_some(Move { outlet, from, to, from_m3s, to_m3s })
+            limits::is_moved(&site.outlets[outlet], (from, from_m3s), (to, to_m3s)).then_some(Move {
+                outlet,
+                from,
+                to,
+                from_m3s,
+                to_m3s,
+            })
         })
         .collect()
 }

@@ -42,7 +42,8 @@ fn dam(gates: usize, others: &[&str]) -> Option<Site> {
     for line in others {
         text += &format!("  - {line}\n");
     }
-    text += "targets:\n  - { name: cold, low: 9, preferred: 12, high: 14, oxygen_min: 7 }\ncold_water: [10]\n";
+    text +=
+        "targets:\n  - { name: cold, low: 9, preferred: 12, high: 14, oxygen_min: 7 }\ncold_water: [10]\n";
     site(&text, "site.yaml").site
 }
 
@@ -108,10 +109,15 @@ fn main() -> ExitCode {
         if times.len() == rounds {
             println!(
                 "{} mixes examined, {} judged, {} skipped, {} allowed, {} sets of outlets, {} limits",
-                ranking.examined, ranking.judged, ranking.skipped, ranking.allowed, ranking.mixes.len(), ranking.rejected.len()
+                ranking.examined,
+                ranking.judged,
+                ranking.skipped,
+                ranking.allowed,
+                ranking.mixes.len(),
+                ranking.rejected.len()
             );
-            for (mix, others) in ranking.ideas(10) {
-                println!("{:?} +{others} {:?}", mix.open, mix.asked[0]);
+            for idea in ranking.ideas(10) {
+                println!("{:?} +{} {:?}", idea.best.open, idea.alike, idea.best.asked[0]);
             }
         }
     }

@@ -18,8 +18,9 @@ use crate::units::{System, in_system};
 use crate::withdrawal::{End, Opening};
 
 use shape::{
-    CheckJson, ColdJson, FlagJson, Head, LayeringJson, LevelJson, MixJson, MovedJson, NowJson, OutletJson, PoolJson, ProblemJson,
-    ProfileJson, ReleaseJson, SettingJson, TargetJson, WarningJson, WellJson, ZoneJson,
+    CheckJson, ColdJson, FlagJson, Head, LayeringJson, LevelJson, MixJson, MovedJson, NowJson, OutletJson,
+    PoolJson, ProblemJson, ProfileJson, ReleaseJson, SettingJson, TargetJson, WarningJson, WellJson,
+    ZoneJson,
 };
 
 use super::sentence::{METHOD, caution};

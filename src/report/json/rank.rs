@@ -4,14 +4,14 @@ use crate::mix::limits::{Check, Group, Of, Rule};
 use crate::mix::{Gate, Setting};
 use crate::rank::{Criterion, Rejected};
 use crate::site::Site;
-use crate::tasks::rank::{Lost, Part, PreferredSplit, RankAnswer, Shown, ShownPart, Unsure};
 use crate::tasks::Context;
+use crate::tasks::rank::{Lost, Part, PreferredSplit, RankAnswer, Shown, ShownPart, Unsure};
 use crate::units::{System, in_system};
 
 use super::rank_shape::{
-    AskedJson, BinsJson, BlockAskedJson, BlockJson, LeastJson, LostJson, MixedJson,
-    NearestJson, NothingFitsJson, PocketJson, RankJson, RankedJson, RejectedJson, RootJson,
-    SplitJson, UnsureJson, WholeDayJson,
+    AskedJson, BinsJson, BlockAskedJson, BlockJson, LeastJson, LostJson, MixedJson, NearestJson,
+    NothingFitsJson, PocketJson, RankJson, RankedJson, RejectedJson, RootJson, SplitJson, UnsureJson,
+    WholeDayJson,
 };
 use super::shape::SettingJson;
 use super::{by_gate, checks, ends, head, moved, setting, targets, warnings, well, written};

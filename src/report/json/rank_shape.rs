@@ -172,6 +172,7 @@ pub(super) struct LeastJson {
 }
 
 #[derive(Serialize)]
+#[expect(clippy::struct_field_names, reason = "keys with their units")]
 pub(super) struct PocketJson {
     pub(super) c_per_m3s: f64,
     pub(super) from_m3s: f64,

@@ -1,5 +1,6 @@
 //! Answers as text a person can read aloud.
 
+mod gates;
 mod mix;
 mod pool;
 mod rank;

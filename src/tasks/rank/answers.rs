@@ -5,8 +5,8 @@ use crate::mix::{Asked, Gate};
 use crate::rank::{Criterion, Progress, Question, Ranked, Ranking, rank as search};
 use crate::target::Target;
 
-use super::reasons::reasons;
 use super::kitchen::Kitchen;
+use super::reasons::{behind, reasons};
 use super::shown::Shown;
 
 /// Shares of two parts between which roots are sought (choice).
@@ -124,8 +124,10 @@ impl Answers<'_> {
             ideas.par_iter().filter_map(|idea| self.kitchen.ranked(idea.best, idea.alike)).collect();
         let mut before: Option<f64> = None;
         for (shown, idea) in mixes.iter_mut().zip(&ideas) {
-            let behind = before.and_then(|key| Criterion::first_apart(self.question.order, key, idea.key));
-            shown.reasons = reasons(self.question.site, shown, before.map(|_| behind));
+            shown.reasons = reasons(self.question.site, shown);
+            shown
+                .reasons
+                .extend(before.map(|key| behind(Criterion::first_apart(self.question.order, key, idea.key))));
             before = Some(idea.key);
         }
         mixes
@@ -252,10 +254,8 @@ impl Answers<'_> {
             }
         }
         let temperatures = || places.iter().map(|p| p.1.0);
-        let bracket_c = [
-            temperatures().fold(f64::INFINITY, f64::min),
-            temperatures().fold(f64::NEG_INFINITY, f64::max),
-        ];
+        let bracket_c =
+            [temperatures().fold(f64::INFINITY, f64::min), temperatures().fold(f64::NEG_INFINITY, f64::max)];
         Some(PreferredSplit { gates: self.kitchen.gates(mix), between, preferred_c, roots, bracket_c })
     }
 
@@ -312,9 +312,8 @@ impl Answers<'_> {
         let at = |times: f64| self.kitchen.water(&self.kitchen.resolved(&scaled(asked, times))).map(|w| w.0);
         let here = at(1.0)?;
         let slope = (at(1.0 + POCKET_STEP)? - at(1.0 - POCKET_STEP)?) / (2.0 * POCKET_STEP);
-        let near = |times: f64| {
-            at(times).is_some_and(|t| (t - here - slope * (times - 1.0)).abs() <= POCKET_NEAR_C)
-        };
+        let near =
+            |times: f64| at(times).is_some_and(|t| (t - here - slope * (times - 1.0)).abs() <= POCKET_NEAR_C);
         let [low, high] = POCKET_RANGE;
         let step = (high - low) / f64::from(POCKET_PLACES);
         let reach = |way: f64, end: f64| {
@@ -324,11 +323,7 @@ impl Answers<'_> {
             }
             times * release_m3s
         };
-        Some(Pocket {
-            c_per_m3s: slope / release_m3s,
-            from_m3s: reach(-1.0, low),
-            to_m3s: reach(1.0, high),
-        })
+        Some(Pocket { c_per_m3s: slope / release_m3s, from_m3s: reach(-1.0, low), to_m3s: reach(1.0, high) })
     }
 }
 

@@ -4,7 +4,8 @@ use chrono::NaiveDate;
 
 use crate::mix::limits::{self, Before, Check, Rule, Whole};
 use crate::mix::{
-    Asked, Blend, Drawn, Gate, Perturbed, Setting, Spread, draw_levels, judge, levels, release, resolve, standings,
+    Asked, Blend, Drawn, Gate, Perturbed, Setting, Spread, draw_levels, judge, levels, release, resolve,
+    standings,
 };
 use crate::rank::Ranked;
 use crate::site::Site;
@@ -154,9 +155,8 @@ impl Kitchen<'_> {
         let (site, profile) = (self.context.site(), &self.context.profile);
         let mut more = Vec::new();
         let releases: Vec<_> = parts.iter().map(|p| p.mix.release).collect();
-        let change = self
-            .now
-            .map(|now| change(site, (now, self.before), day, &releases, self.date, &mut more));
+        let change =
+            self.now.map(|now| change(site, (now, self.before), day, &releases, self.date, &mut more));
         if parts.len() > 1 {
             // the pool falls by what the whole day takes, not by what one part of it would
             let mut whole = Vec::new();
@@ -208,7 +208,8 @@ fn day(parts: &[(f64, &Setting)]) -> Setting {
     let mut day = parts.first().map_or_else(Setting::default, |p| p.1.clone());
     let mean = |gates: &mut [Gate], of: fn(&Setting) -> &[Gate]| {
         for gate in gates {
-            let same = |s: &Setting| of(s).iter().find(|g| g.outlet == gate.outlet).map_or(0.0, |g| g.flow_m3s);
+            let same =
+                |s: &Setting| of(s).iter().find(|g| g.outlet == gate.outlet).map_or(0.0, |g| g.flow_m3s);
             gate.flow_m3s = parts.iter().map(|(share, setting)| share * same(setting)).sum();
         }
     };

@@ -121,7 +121,7 @@ pub fn rank(
     }
     let mut now_shown = now.and_then(|setting| kitchen.now(setting));
     if let Some(shown) = &mut now_shown {
-        shown.reasons = reasons(site, shown, None);
+        shown.reasons = reasons(site, shown);
     }
     let question = Question {
         site,
@@ -198,6 +198,8 @@ fn no_now(failure: Failure) -> Problem {
     };
     Problem::note(
         "now-unknown",
-        format!("the setting now is not known ({why}): moves are not counted and rates of change not checked"),
+        format!(
+            "the setting now is not known ({why}): moves are not counted and rates of change not checked"
+        ),
     )
 }

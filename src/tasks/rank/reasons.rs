@@ -8,13 +8,13 @@ use crate::units::say;
 
 use super::shown::Shown;
 
-/// Reasons of a mix; `behind` is the criterion that puts it behind the one before, where there is one: `None` where no
-/// criterion tells them apart.
-pub(super) fn reasons(site: &Site, shown: &Shown, behind: Option<Option<Criterion>>) -> Vec<String> {
+/// What a mix gives and takes.
+pub(super) fn reasons(site: &Site, shown: &Shown) -> Vec<String> {
     let mut out = Vec::new();
     for standing in shown.targets.iter().filter(|s| s.governs || s.missed()) {
         let rule = &site.targets[standing.target];
-        let words: Vec<String> = [warmth(rule, standing), air(rule, standing)].into_iter().flatten().collect();
+        let words: Vec<String> =
+            [warmth(rule, standing), air(rule, standing)].into_iter().flatten().collect();
         if !words.is_empty() {
             out.push(format!("{}: {}", rule.name, words.join(", ")));
         }
@@ -22,7 +22,7 @@ pub(super) fn reasons(site: &Site, shown: &Shown, behind: Option<Option<Criterio
     if let (Some(cold), Some(threshold)) = (shown.cold_m3_per_day, site.cold_water_c.first()) {
         let share = cold / (86_400.0 * shown.flow_m3s);
         out.push(format!(
-            "takes {} a day colder than {}, {:.0} % of the release",
+            "takes {} a day below {}, {:.0} % of the release",
             say::m3(cold, 0),
             say::c(*threshold, 1),
             100.0 * share
@@ -40,12 +40,15 @@ pub(super) fn reasons(site: &Site, shown: &Shown, behind: Option<Option<Criterio
             n => format!("{n} gates move{crew}"),
         });
     }
-    match behind {
-        None => {}
-        Some(Some(criterion)) => out.push(format!("behind the one before by {}", words(criterion))),
-        Some(None) => out.push("level with the one before; elevation and name decide".to_owned()),
-    }
     out
+}
+
+/// What puts a mix behind the one before; `None` where no criterion tells them apart.
+pub(super) fn behind(criterion: Option<Criterion>) -> String {
+    match criterion {
+        Some(criterion) => format!("behind the one before by {}", words(criterion)),
+        None => "level with the one before; elevation and name decide".to_owned(),
+    }
 }
 
 /// A criterion in a sentence.
@@ -69,9 +72,8 @@ fn warmth(rule: &Target, standing: &TargetStanding) -> Option<String> {
         Standing::Above => Some(format!("{shown} is {} too warm", say::dc(by, 1))),
         Standing::Inside => Some(match rule.preferred_c {
             Some(preferred) => format!(
-                "{shown} is inside its range, {} from the preferred {}",
-                say::dc((value - preferred).abs(), 1),
-                say::c(preferred, 1)
+                "{shown} is inside its range, {} from the preferred",
+                say::dc((value - preferred).abs(), 1)
             ),
             None => format!("{shown} is inside its range"),
         }),
@@ -85,7 +87,7 @@ fn air(rule: &Target, standing: &TargetStanding) -> Option<String> {
             format!("oxygen {oxygen:.1} mg/L is {:.1} mg/L below its floor", floor - oxygen)
         }
         (Some(oxygen), Standing::Inside) => {
-            format!("oxygen {oxygen:.1} mg/L keeps its floor of {floor:.1} mg/L")
+            format!("oxygen {oxygen:.1} mg/L keeps its floor")
         }
         _ => "oxygen is not known".to_owned(),
     })

@@ -8,9 +8,9 @@ use crate::tasks::Context;
 use crate::tasks::rank::{Least, Lost, Part, Pocket, PreferredSplit, RankAnswer, Root, Shown, Trade};
 use crate::units::{Dimension, System, figure, in_system};
 
-use super::gates::{instruction, moves, named, openings};
 use super::{block_name, flags, flow, labelled, oxygen, temperature};
 use crate::report::sentence::unsure_words;
+use crate::report::text::gates::{instruction, moves, named, openings};
 
 /// A step of the release that the pocket rule speaks of, cfs and m3/s.
 const POCKET: (f64, f64) = (100.0, 10.0);
@@ -23,10 +23,7 @@ pub(super) fn best(context: &Context, best: &Shown) -> String {
         let lead = if best.parts.len() > 1 { block_name(context, at) + ": " } else { String::new() };
         set.push(lead + &instruction(context, part));
     }
-    set.extend(moves(context, best));
-    if let Some(day) = best.change.as_ref().and_then(|c| c.earliest) {
-        set.push(format!("the crew can come from {day}"));
-    }
+    set.extend(best.change.as_ref().map(|change| moves(context, change)));
     let mut why: Vec<String> = best.reasons.iter().map(|r| harmless(&in_system(r, system))).collect();
     if let Some(lost) = best.generation_lost_mw.filter(|mw| *mw > 0.0) {
         why.push(format!("{lost:.1} MW not made"));
@@ -62,7 +59,9 @@ pub(super) fn answers(context: &Context, answer: &RankAnswer) -> String {
     if answer.trade.len() > 1 {
         out.push_str(&labelled("Trade", &trade(context, &answer.trade)));
     }
-    out.push_str(&answer.split.as_ref().map_or_else(String::new, |s| labelled("Split", &split(context, answer, s))));
+    out.push_str(
+        &answer.split.as_ref().map_or_else(String::new, |s| labelled("Split", &split(context, answer, s))),
+    );
     out.push_str(&answer.least.as_ref().map_or_else(String::new, |l| labelled("Least", &least(context, l))));
     out.push_str(&answer.pocket.map_or_else(String::new, |p| labelled("More", &pocket(context, p))));
     if !answer.lost.is_empty() && !answer.mixes.is_empty() {
@@ -80,9 +79,10 @@ fn trade(context: &Context, trade: &[Trade]) -> String {
             words.push((temperature(t.temperature_c, context.system), air));
         }
     }
-    let words: Vec<String> = words.iter().map(|(t, o)| format!("{t} {o}")).collect();
+    let words: Vec<String> =
+        words.iter().map(|(t, o)| format!("{t} {}", o.trim_end_matches(" mg/L"))).collect();
     let last = trade.last().map_or_else(String::new, |t| named(context, &[&t.gates]).join(", "));
-    format!("beaten by none on both: {} (the last: {last})", words.join(", "))
+    format!("unbeaten in both: {} mg/L ({last})", words.join(", "))
 }
 
 fn split(context: &Context, answer: &RankAnswer, split: &PreferredSplit) -> String {
@@ -103,7 +103,8 @@ fn split(context: &Context, answer: &RankAnswer, split: &PreferredSplit) -> Stri
     } else {
         format!("of {}", named(context, &[&split.gates]).join(", "))
     };
-    let one = |r: &Root| format!("{a} {}, {b} {}", flow(r.flows_m3s[0], system), flow(r.flows_m3s[1], system));
+    let one =
+        |r: &Root| format!("{a} {}, {b} {}", flow(r.flows_m3s[0], system), flow(r.flows_m3s[1], system));
     let roots: Vec<String> = split.roots.iter().map(one).collect();
     if roots.is_empty() {
         let unit = system.unit(Dimension::Temperature);
@@ -116,28 +117,24 @@ fn split(context: &Context, answer: &RankAnswer, split: &PreferredSplit) -> Stri
 
 fn least(context: &Context, least: &Least) -> String {
     let system = context.system;
-    match least.flow_m3s {
-        Some(found) => {
-            let gates = named(context, &[&least.gates]).join(", ");
-            format!("{} in all keeps every target: {gates}", flow(found, system))
-        }
-        None => {
-            let [low, high] = least.tried_m3s.map(|f| flow(f, system));
-            format!("no release tried, from {low} to {high}, keeps every target")
-        }
+    if let Some(found) = least.flow_m3s {
+        let gates = named(context, &[&least.gates]).join(", ");
+        format!("{} in all keeps every target: {gates}", flow(found, system))
+    } else {
+        let [low, high] = least.tried_m3s.map(|f| flow(f, system));
+        format!("no release tried, from {low} to {high}, keeps every target")
     }
 }
 
 fn pocket(context: &Context, pocket: Pocket) -> String {
     let system = context.system;
-    let (release, warmth) =
-        (system.unit(Dimension::Flow), system.unit(Dimension::TemperatureDifference));
+    let (release, warmth) = (system.unit(Dimension::Flow), system.unit(Dimension::TemperatureDifference));
     let more_m3s = release.to_si(if system == System::Us { POCKET.0 } else { POCKET.1 });
     let by = warmth.from_si(pocket.c_per_m3s * more_m3s);
     let way = if by < 0.0 { "colder" } else { "warmer" };
     let words = if by.abs() < 0.05 { "less than 0.1".to_owned() } else { format!("{:.1}", by.abs()) };
     format!(
-        "each {} more in proportion: {words} {} {way} ({} to {})",
+        "each {} more in proportion: {words} {} {way} ({}-{})",
         flow(more_m3s, system),
         warmth.symbol(),
         figure(pocket.from_m3s, release, 0),

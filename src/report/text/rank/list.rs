@@ -12,21 +12,20 @@ use crate::tasks::Context;
 use crate::tasks::rank::{RankAnswer, Shown};
 use crate::units::{Dimension, System, figure, in_system};
 
-use super::gates::openings;
+use crate::report::text::gates::openings;
 use crate::report::text::{WIDTH, fitted, wrapped};
 
 /// Cells of a line; the second, the gates, takes what the others leave.
 type Cells = [String; 7];
 /// What the columns hold.
-const CAPTION: &str =
-    "10-90% and `in`, the share inside, are of our perturbed cases; moves with crew hours";
+const CAPTION: &str = "10-90% and `in` (the share inside) are of our perturbed cases; moves, crew hours";
 /// Least width left to the gates.
 const GATES: usize = 16;
 
 /// ```text
 ///  no gates (flows in cfs)          water F 10-90%  O2 stands  in moves
 /// now N3 100%, S3 100%              54.6 53.5-56.1 7.1 inside 55% 0
-///   1 N3 100%, S3 100%, Sluice 180  52.9 51.8-54.2 7.0 inside 58% 1 0.5h
+///   1 N3 100%, S3 100%, Sluice 180  52.9 51.8-54.2 7.0 inside 58% 1 0.5
 /// ```
 pub(super) fn list(context: &Context, answer: &RankAnswer) -> String {
     let system = context.system;
@@ -76,9 +75,9 @@ fn cells(context: &Context, number: &str, shown: &Shown) -> Cells {
     ]
 }
 
-/// `0.5h`, nothing for none.
+/// `0.5`, nothing for none.
 fn in_hours(hours: f64) -> String {
-    if hours > 0.0 { format!("{hours:.1}").trim_end_matches(".0").to_owned() + "h" } else { String::new() }
+    if hours > 0.0 { format!("{hours:.1}").trim_end_matches(".0").to_owned() } else { String::new() }
 }
 
 /// Limits that a mix computed in full breaks though the search took it for one that keeps them, or that the setting
@@ -86,7 +85,9 @@ fn in_hours(hours: f64) -> String {
 fn told(context: &Context, whose: &str, shown: &Shown) -> Vec<String> {
     let broken = shown.limits.iter().filter(|c| c.broken());
     broken
-        .map(|c| format!("! {whose} misses {}", harmless(&in_system(&c.words(context.site()), context.system))))
+        .map(|c| {
+            format!("! {whose} misses {}", harmless(&in_system(&c.words(context.site()), context.system)))
+        })
         .collect()
 }
 

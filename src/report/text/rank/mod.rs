@@ -1,7 +1,6 @@
 //! Which mixes fit, on one screen: what was asked, the list, why no. 1, and the answers beyond it.
 
 mod below;
-mod gates;
 mod list;
 mod refused;
 
@@ -14,8 +13,9 @@ use crate::tasks::Context;
 use crate::tasks::rank::{NothingFits, RankAnswer, Shown};
 use crate::units::{Dimension, System, show};
 
+use super::gates::openings;
 use super::mix::range;
-use super::{flow, labelled, oxygen, step, temperature, wrapped};
+use super::{flow, labelled, oxygen, temperature, wrapped};
 
 /// What was asked, the list and what follows from it.
 pub(super) fn body(context: &Context, answer: &RankAnswer) -> String {
@@ -37,8 +37,11 @@ pub(super) fn body(context: &Context, answer: &RankAnswer) -> String {
     if let Some(best) = answer.mixes.first() {
         out.push_str(&below::best(context, best));
     }
-    out.push_str(&below::answers(context, answer));
-    out.push_str(&refused::rejected(context, answer));
+    let (answers, rejected) = (below::answers(context, answer), refused::rejected(context, answer));
+    // where nothing fits, what stands in the way comes first
+    let [first, second] = if answer.mixes.is_empty() { [rejected, answers] } else { [answers, rejected] };
+    out.push_str(&first);
+    out.push_str(&second);
     out.push_str(&examined(answer, system));
     for note in answer.notes.iter().chain(flags(&context.profile.flags)) {
         out.push_str(&labelled("Note", &note.advice(system)));
@@ -66,7 +69,7 @@ fn not_checked(context: &Context, best: &Shown) -> String {
     if told.is_empty() {
         return String::new();
     }
-    wrapped(&format!("Not checked: {}", harmless(&told.join("; "))), 13)
+    wrapped(&format!("Not checked: {}", harmless(&told.join("; "))), 2)
 }
 
 fn asked(context: &Context, answer: &RankAnswer) -> String {
@@ -80,7 +83,12 @@ fn asked(context: &Context, answer: &RankAnswer) -> String {
             blocks.iter().enumerate().map(one).collect::<Vec<_>>().join(", ")
         }
     };
-    let _ = write!(out, " ({}), split in steps of {:.3}", answer.release_from.words(), 100.0 / answer.steps as f64);
+    let _ = write!(
+        out,
+        " ({}), split in steps of {:.3}",
+        answer.release_from.words(),
+        100.0 / answer.steps as f64
+    );
     let mut out = out.trim_end_matches('0').trim_end_matches('.').to_owned() + " %";
     if answer.order != Criterion::NAMES.map(|c| c.1) {
         let by: Vec<&str> = answer.order.iter().map(|c| c.name()).collect();
@@ -122,7 +130,7 @@ fn nearly(context: &Context, nearest: &Shown) -> String {
     }
     format!(
         "{}, {}, oxygen {}: {}",
-        gates::openings(context, nearest).join(", "),
+        openings(context, nearest).join(", "),
         temperature(nearest.temperature_c, system),
         oxygen(nearest.oxygen_mg_l),
         misses.join("; ")
@@ -132,7 +140,7 @@ fn nearly(context: &Context, nearest: &Shown) -> String {
 fn examined(answer: &RankAnswer, system: System) -> String {
     let r = &answer.ranking;
     let mut words = format!(
-        "{} mixes: {} judged, {} passed over with proof; {} allowed",
+        "{} mixes: {} judged, {} skipped with proof; {} allowed",
         grouped(r.examined),
         grouped(r.judged),
         grouped(r.skipped),
@@ -140,9 +148,9 @@ fn examined(answer: &RankAnswer, system: System) -> String {
     );
     if !answer.mixes.is_empty() {
         let apart = show(answer.apart.0, Dimension::TemperatureDifference, system, 3);
-        let _ = write!(words, "; search and full computation differ by at most {apart}");
+        let _ = write!(words, "; full computation differs by up to {apart}");
         if let Some(oxygen) = answer.apart.1 {
-            let _ = write!(words, " and {oxygen:.3} mg/L");
+            let _ = write!(words, ", {oxygen:.3} mg/L");
         }
     }
     labelled("Examined", &words)

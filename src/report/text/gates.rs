@@ -1,13 +1,15 @@
 //! What is set, in the words of a crew.
 
+use std::fmt::Write as _;
+
 use crate::mix::Gate;
 use crate::problem::harmless;
 use crate::site::Outlet;
-use crate::tasks::Context;
 use crate::tasks::rank::{Shown, ShownPart};
-use crate::units::{Dimension, figure};
+use crate::tasks::{Change, Context, Move};
+use crate::units::{Dimension, System, figure};
 
-use crate::report::text::flow;
+use super::flow;
 
 /// Each open gate with its opening, by name; an outlet that passes any flow with its flow, or one for each part of
 /// the day, in the unit of the heading.
@@ -28,7 +30,10 @@ pub(super) fn named(context: &Context, parts: &[&[Gate]]) -> Vec<String> {
     gates.sort_by(|a, b| a.0.name.cmp(&b.0.name));
     let flows = |outlet: usize| {
         let of = |part: &&[Gate]| {
-            part.iter().filter(|g| g.outlet == outlet).map(|g| figure(g.flow_m3s, unit, digits(context))).collect()
+            part.iter()
+                .filter(|g| g.outlet == outlet)
+                .map(|g| figure(g.flow_m3s, unit, digits(context)))
+                .collect()
         };
         let mut flows: Vec<String> = parts.iter().map(of).collect();
         flows.dedup();
@@ -49,7 +54,7 @@ pub(super) fn named(context: &Context, parts: &[&[Gate]]) -> Vec<String> {
 
 /// Decimals of a flow without its unit.
 fn digits(context: &Context) -> u8 {
-    u8::from(context.system == crate::units::System::Si)
+    u8::from(context.system == System::Si)
 }
 
 fn opening(outlet: &Outlet, opening: f64) -> String {
@@ -66,7 +71,7 @@ pub(super) fn instruction(context: &Context, part: &ShownPart) -> String {
             gates.iter().filter(|g| site.outlets[g.outlet].well == Some(state.well)).copied().collect();
         let open = named(context, &[&on]).join(", ");
         let name = harmless(&site.wells[state.well].name);
-        out.push(format!("{name} {} through {open}", flow(state.flow_m3s, system)));
+        out.push(format!("{name} {} ({open})", flow(state.flow_m3s, system)));
     }
     let split = |g: &&Gate| {
         let well = site.outlets[g.outlet].well;
@@ -76,15 +81,15 @@ pub(super) fn instruction(context: &Context, part: &ShownPart) -> String {
     direct.sort_by(|a, b| site.outlets[a.outlet].name.cmp(&site.outlets[b.outlet].name));
     out.extend(direct.iter().map(|g| {
         let o = &site.outlets[g.outlet];
-        let at = if o.positions.is_empty() { String::new() } else { format!(" at {}", opening(o, g.opening)) };
+        let at =
+            if o.positions.is_empty() { String::new() } else { format!(" at {}", opening(o, g.opening)) };
         format!("{} {}{at}", harmless(&o.name), flow(g.flow_m3s, system))
     }));
-    out.join("; ")
+    out.join(", ")
 }
 
-/// Which gates move, and from where to where.
-pub(super) fn moves(context: &Context, shown: &Shown) -> Option<String> {
-    let change = shown.change.as_ref()?;
+/// Which gates move, from where to where, and from which day the crew can.
+pub(super) fn moves(context: &Context, change: &Change) -> String {
     let stand = |o: &Outlet, open: f64, flow_m3s: f64| {
         if open <= 0.0 {
             "shut".to_owned()
@@ -94,10 +99,15 @@ pub(super) fn moves(context: &Context, shown: &Shown) -> Option<String> {
             opening(o, open)
         }
     };
-    let one = |m: &crate::tasks::Move| {
+    let one = |m: &Move| {
         let o = &context.site().outlets[m.outlet];
         harmless(&format!("{} {} to {}", o.name, stand(o, m.from, m.from_m3s), stand(o, m.to, m.to_m3s)))
     };
     let moved: Vec<String> = change.moved.iter().map(one).collect();
-    Some(if moved.is_empty() { "no gate moves".into() } else { format!("move {}", moved.join(", ")) })
+    let mut out =
+        if moved.is_empty() { "no gate moves".into() } else { format!("move {}", moved.join(", ")) };
+    if let Some(day) = change.earliest {
+        _ = write!(out, "; the crew can come from {day}");
+    }
+    out
 }
