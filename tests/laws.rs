@@ -16,6 +16,8 @@ mod crest;
 mod levelling;
 #[path = "laws/mix/mod.rs"]
 mod mix;
+#[path = "laws/rank/mod.rs"]
+mod rank;
 #[path = "laws/shape.rs"]
 mod shape;
 #[path = "laws/wells/mod.rs"]

@@ -24,7 +24,12 @@ pub(super) fn ways(counts: &[Vec<u64>], steps: usize) -> Vec<u64> {
 
 /// Which parts are taken one inside the other, and the rest taken together. Parts that share a level stand beside
 /// each other; where they make few pairs they too are taken together. The head is never empty.
-pub(super) fn arranged(units: &[Choices], steps: usize, levels: &Levels, undrawn: bool) -> (Vec<Choices>, Choices) {
+pub(super) fn arranged(
+    units: &[Choices],
+    steps: usize,
+    levels: &Levels,
+    undrawn: bool,
+) -> (Vec<Choices>, Choices) {
     let mut nothing = Choices { by_share: vec![Vec::new(); steps + 1], units: 0 };
     nothing.by_share[0].push(Choice {
         lanes: vec![0.0; levels.lanes.count()],
@@ -32,11 +37,14 @@ pub(super) fn arranged(units: &[Choices], steps: usize, levels: &Levels, undrawn
         idea: 0,
         number: 0,
         parts: Vec::new(),
+        slots: 0,
     });
     let mut head = Vec::new();
     let mut alone = Vec::new();
     for island in islands(units) {
-        let shares = island.len() > 1;
+        // a level can be one that parts share though the other has no choice left that draws there
+        let mut choices = island.iter().flat_map(|&u| units[u].by_share.iter().flatten());
+        let shares = choices.any(|c| !c.parts.is_empty());
         let joined = island.iter().try_fold(nothing.clone(), |so_far, &unit| {
             let fits = so_far.pairs(&units[unit]) <= MOST_ROWS;
             (fits && !(shares && undrawn)).then(|| together(&so_far, &units[unit]))

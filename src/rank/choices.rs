@@ -6,7 +6,7 @@ use super::curve::Curves;
 pub(super) const MOST_BLOCKS: usize = 4;
 
 /// Places of the sums a choice adds to: for each block flow, flow times temperature and flow times oxygen; then
-/// cold water, cost, hours and moves; then, block by block, what rules of the whole mix need.
+/// cold water, effort, hours and moves; then, block by block, what rules of the whole mix need.
 #[derive(Debug, Clone, Copy)]
 pub(super) struct Lanes {
     /// Blocks of the day, 1 to [`MOST_BLOCKS`].
@@ -24,7 +24,7 @@ impl Lanes {
     pub(super) fn cold(self) -> usize {
         3 * self.blocks
     }
-    pub(super) fn cost(self) -> usize {
+    pub(super) fn effort(self) -> usize {
         3 * self.blocks + 1
     }
     pub(super) fn hours(self) -> usize {
@@ -57,6 +57,8 @@ pub(super) struct Part {
     pub(super) slot: usize,
     /// Its part of the slot's code.
     pub(super) code: usize,
+    /// A gate that somebody set is among it: no leak, and nothing that spills by itself.
+    pub(super) set: bool,
     /// Flow in each block, m3/s.
     pub(super) flows_m3s: [f64; MOST_BLOCKS],
     /// What it adds to the lanes when nothing else draws there; already in the choice's lanes.
@@ -70,7 +72,7 @@ pub(super) struct Part {
 pub(super) struct Choice {
     /// Sums, as [`Lanes`] places them.
     pub(super) lanes: Vec<f64>,
-    /// Oxygen of its own water is unknown in some block.
+    /// Oxygen of its own water is unknown in some block, as far as nothing else draws there.
     pub(super) unknown: bool,
     /// Its part of the index of ideas: which outlets are open.
     pub(super) idea: usize,
@@ -78,6 +80,8 @@ pub(super) struct Choice {
     pub(super) number: u64,
     /// What it sends through levels it shares with other parts.
     pub(super) parts: Vec<Part>,
+    /// Slots of its parts, as bits.
+    pub(super) slots: u64,
 }
 
 /// The choices of a part of the dam, by share: `by_share[k]` at `k` steps of the release.
@@ -126,40 +130,31 @@ pub(super) struct Levels<'a> {
 
 impl Levels<'_> {
     /// Makes good that parts drawn through one level act as one sink: what each would add alone is taken off and
-    /// what they add together put on. Tells whether the oxygen is unknown in any slot.
-    pub(super) fn join(&self, parts: &[&Part], lanes: &mut [f64]) -> bool {
+    /// what they add together put on. `shared` has a bit for each slot with several parts. Tells whether the oxygen is
+    /// unknown in any slot.
+    #[inline]
+    pub(super) fn join(&self, parts: &[&Part], mut shared: u64, lanes: &mut [f64]) -> bool {
         let mut unknown = false;
-        for (i, &part) in parts.iter().enumerate() {
-            if parts[..i].iter().any(|p| p.slot == part.slot) {
-                continue;
-            }
-            let same = || parts[i..].iter().copied().filter(|p| p.slot == part.slot);
-            if same().nth(1).is_none() {
-                unknown |= part.alone_unknown;
-                continue;
-            }
-            for other in same() {
-                for (lane, alone) in lanes.iter_mut().zip(&other.alone) {
+        for part in parts {
+            unknown |= part.alone_unknown && shared & (1 << part.slot) == 0;
+        }
+        while shared != 0 {
+            let slot = shared.trailing_zeros() as usize;
+            shared &= shared - 1;
+            let mut code = 0;
+            let mut flows = [0.0; MOST_BLOCKS];
+            for part in parts.iter().filter(|p| p.slot == slot) {
+                code += part.code;
+                for (sum, flow) in flows.iter_mut().zip(part.flows_m3s) {
+                    *sum += flow;
+                }
+                for (lane, alone) in lanes.iter_mut().zip(&part.alone) {
                     *lane -= alone;
                 }
             }
-            unknown |= self.together(same(), lanes);
+            unknown |= self.add(self.slots[slot].curves[code], &flows, lanes);
         }
         unknown
-    }
-
-    /// Adds what parts through one slot give together. Tells whether its oxygen is unknown.
-    fn together<'p>(&self, parts: impl Iterator<Item = &'p Part>, lanes: &mut [f64]) -> bool {
-        let (mut slot, mut code) = (0, 0);
-        let mut flows = [0.0; MOST_BLOCKS];
-        for part in parts {
-            slot = part.slot;
-            code += part.code;
-            for (sum, flow) in flows.iter_mut().zip(part.flows_m3s) {
-                *sum += flow;
-            }
-        }
-        self.add(self.slots[slot].curves[code], &flows, lanes)
     }
 
     /// Adds the water of one curve at the flow of each block. Tells whether its oxygen is unknown in any.
@@ -198,6 +193,7 @@ pub(super) fn together(a: &Choices, b: &Choices) -> Choices {
                     idea: x.idea + y.idea,
                     number: x.number + y.number,
                     parts: x.parts.iter().chain(&y.parts).cloned().collect(),
+                    slots: x.slots | y.slots,
                 });
             }
         }
@@ -209,7 +205,20 @@ pub(super) fn together(a: &Choices, b: &Choices) -> Choices {
 pub(super) fn settled(mut choices: Choices, levels: &Levels) -> Choices {
     for choice in choices.by_share.iter_mut().flatten() {
         let parts = std::mem::take(&mut choice.parts);
-        choice.unknown |= levels.join(&parts.iter().collect::<Vec<_>>(), &mut choice.lanes);
+        let parts: Vec<&Part> = parts.iter().collect();
+        choice.unknown |= levels.join(&parts, shared(&parts), &mut choice.lanes);
+        choice.slots = 0;
     }
     choices
+}
+
+/// Slots with several parts, as bits.
+pub(super) fn shared(parts: &[&Part]) -> u64 {
+    let mut seen = 0;
+    parts.iter().fold(0, |shared, part| {
+        let bit = 1 << part.slot;
+        let again = seen & bit;
+        seen |= bit;
+        shared | again
+    })
 }

@@ -99,6 +99,16 @@ impl Found {
         self
     }
 
+    /// Enters a mix among the ends of what is attainable: temperature (C), and oxygen (mg/L) where it is known.
+    pub(super) fn ends(&mut self, temperature_c: f64, oxygen_mg_l: Option<f64>, number: u64) {
+        lower(&mut self.coldest, (temperature_c, number));
+        higher(&mut self.warmest, (temperature_c, number));
+        if let Some(oxygen) = oxygen_mg_l {
+            lower(&mut self.least_oxygen, (oxygen, number));
+            higher(&mut self.most_oxygen, (oxygen, number));
+        }
+    }
+
     /// Enters the oxygen of a mix at its distance from the preferred temperature, C.
     #[inline]
     pub(super) fn trade(&mut self, distance_c: f64, at: At) {
@@ -123,7 +133,11 @@ impl Found {
 
 /// Bin of the trade curve that holds a distance from the preferred temperature, C; the last holds all beyond.
 #[inline]
-#[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "a whole number from 0 to the last bin")]
+#[expect(
+    clippy::cast_possible_truncation,
+    clippy::cast_sign_loss,
+    reason = "a whole number from 0 to the last bin"
+)]
 fn trade_bin(distance_c: f64) -> usize {
     let last = (TRADE_BINS - 1) as f64;
     let bin = whole(distance_c * (1.0 / TRADE_STEP_C));

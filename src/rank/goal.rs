@@ -101,19 +101,34 @@ impl Wanted {
     }
 }
 
-/// What a day's water is judged by, over time as a gauge sees it; a number of mixes at once has a range of each.
-#[derive(Debug, Clone, Copy)]
-pub(super) struct Day {
-    /// Least and greatest of the time mean, the greatest and the least temperature of the day, C; of a steady day only
-    /// the first counts.
-    pub(super) temperature_c: [[f64; 2]; 3],
+/// What the water of `N` days is judged by, over time as a gauge sees it; a day may stand for several mixes, and has
+/// then a range of each.
+#[derive(Debug, Clone)]
+pub(super) struct Days<const N: usize> {
+    /// Least of the time mean, the greatest and the least temperature of the day, C; of a steady day only the first
+    /// counts.
+    pub(super) low_c: [[f64; N]; 3],
+    /// The greatest of each.
+    pub(super) high_c: [[f64; N]; 3],
     /// Greatest of the time mean and of the least oxygen, mg/L.
-    pub(super) oxygen_mg_l: [f64; 2],
+    pub(super) oxygen_mg_l: [[f64; N]; 2],
     /// Least cold water, as a share of the release.
-    pub(super) cold_share: f64,
-    /// Least cost of moves, and crew hours.
-    pub(super) cost: f64,
-    pub(super) hours: f64,
+    pub(super) cold_share: [f64; N],
+    /// Least effort of the moves, as [`effort`] tells it.
+    pub(super) effort: [f64; N],
+}
+
+impl<const N: usize> Default for Days<N> {
+    fn default() -> Self {
+        let none = [0.0; N];
+        Self {
+            low_c: [none; 3],
+            high_c: [none; 3],
+            oxygen_mg_l: [none; 2],
+            cold_share: none,
+            effort: none,
+        }
+    }
 }
 
 /// The rules valid on a date and the order asked for, made ready for many mixes.
@@ -164,45 +179,94 @@ impl Goal {
     }
 
     /// Least distance from the preferred temperature, C; where no rule prefers one, from the range. `statistics` is 1
-    /// for a steady day, else 3.
+    /// for steady days, else 3.
     #[inline]
-    pub(super) fn distance_c(&self, day: &Day, statistics: usize) -> f64 {
-        let mut distance = 0.0;
-        for (w, [low, high]) in self.wanted.iter().zip(day.temperature_c).take(statistics) {
-            distance = most(most(distance, low - w.preferred.0), w.preferred.1 - high);
+    pub(super) fn distances_c<const N: usize>(&self, days: &Days<N>, statistics: usize) -> [f64; N] {
+        let mut out = [0.0; N];
+        for (w, (low, high)) in self.wanted.iter().zip(days.low_c.iter().zip(&days.high_c)).take(statistics) {
+            for i in 0..N {
+                out[i] = most(most(out[i], low[i] - w.preferred.0), w.preferred.1 - high[i]);
+            }
         }
-        distance
+        out
     }
 
-    /// The key by which mixes are ordered, a whole number: the smaller the better; of a number of mixes, none has a
-    /// smaller one. Unknown oxygen comes after oxygen known to keep the floor and before any that does not.
+    /// The keys by which mixes are ordered, whole numbers: the smaller the better; of several mixes none has a smaller
+    /// one. Every line goes over all days, so that they are computed side by side.
     #[inline]
-    pub(super) fn key(&self, day: &Day, statistics: usize, distance_c: f64) -> f64 {
-        let (mut range, mut short) = (0.0, 0.0);
-        for (i, (w, [low, high])) in self.wanted.iter().zip(day.temperature_c).take(statistics).enumerate() {
-            range = most(most(range, w.low - high), low - w.high);
-            short = most(short, w.floor - day.oxygen_mg_l[usize::from(i > 0)]);
+    pub(super) fn keys<const N: usize>(
+        &self,
+        days: &Days<N>,
+        statistics: usize,
+        distances_c: &[f64; N],
+    ) -> [f64; N] {
+        let (mut range, mut short) = ([0.0; N], [0.0; N]);
+        for (s, w) in self.wanted.iter().enumerate().take(statistics) {
+            let (low, high) = (&days.low_c[s], &days.high_c[s]);
+            let oxygen = &days.oxygen_mg_l[usize::from(s > 0)];
+            for i in 0..N {
+                range[i] = most(most(range[i], w.low - high[i]), low[i] - w.high);
+                short[i] = most(short[i], w.floor - oxygen[i]);
+            }
         }
-        // a miss of part of a bin is a whole one
-        let missed = if short > ROUND_OFF { 2.0 } else { 0.0 };
-        let oxygen = missed + up_to(whole(short * self.per_mg_l - ROUND_OFF), STEPS - 3.0);
-        let missed = if range > ROUND_OFF { 1.0 } else { 0.0 };
-        let outside = missed + up_to(whole(range * self.per_c - ROUND_OFF), STEPS - 2.0);
-        let far = up_to(whole(distance_c * self.per_c + ROUND_OFF), STEPS - 1.0);
-        let cold = up_to(whole(day.cold_share * self.per_share + ROUND_OFF), COLD_STEPS - 1.0);
-        let cost = up_to(whole(day.cost * (1.0 / COST_STEP) + 0.5), MOVE_STEPS - 1.0);
-        let hours = up_to(whole(day.hours * (1.0 / HOUR_STEP) + 0.5), MOVE_STEPS - 1.0);
         let [w_oxygen, w_range, w_far, w_cold, w_moves] = self.weights;
-        (oxygen * w_oxygen + outside * w_range)
-            + (far * w_far + cold * w_cold)
-            + (cost * MOVE_STEPS + hours) * w_moves
+        let mut key = [0.0; N];
+        // a miss of part of a bin is a whole one; one step is kept for oxygen that is not known
+        for i in 0..N {
+            let missed = if short[i] > ROUND_OFF { 2.0 } else { 0.0 };
+            key[i] = w_oxygen * (missed + up_to(whole(short[i] * self.per_mg_l - ROUND_OFF), STEPS - 3.0));
+        }
+        for i in 0..N {
+            let missed = if range[i] > ROUND_OFF { 1.0 } else { 0.0 };
+            key[i] += w_range * (missed + up_to(whole(range[i] * self.per_c - ROUND_OFF), STEPS - 2.0));
+        }
+        for i in 0..N {
+            key[i] += w_far * up_to(whole(distances_c[i] * self.per_c + ROUND_OFF), STEPS - 1.0);
+        }
+        for i in 0..N {
+            key[i] += w_cold * up_to(whole(days.cold_share[i] * self.per_share + ROUND_OFF), COLD_STEPS - 1.0);
+        }
+        for i in 0..N {
+            key[i] += w_moves * up_to(days.effort[i], MOVE_STEPS * MOVE_STEPS - 1.0);
+        }
+        key
     }
 
-    /// The key of a day whose oxygen is unknown.
-    pub(super) fn key_unknown(&self, day: &Day, statistics: usize, distance_c: f64) -> f64 {
-        let told = Day { oxygen_mg_l: [f64::INFINITY; 2], ..*day };
+    /// The keys of the same days with oxygen unknown: after oxygen known to keep the floor, before any that does not.
+    pub(super) fn keys_unknown<const N: usize>(
+        &self,
+        days: &Days<N>,
+        statistics: usize,
+        distances_c: &[f64; N],
+    ) -> [f64; N] {
+        let told = Days { oxygen_mg_l: [[f64::INFINITY; N]; 2], ..days.clone() };
         let unknown = if self.has_floor { self.weights[0] } else { 0.0 };
-        self.key(&told, statistics, distance_c) + unknown
+        self.keys(&told, statistics, distances_c).map(|key| key + unknown)
+    }
+}
+
+/// Steps of cost and of crew hours by which efforts are told apart: a tenth and a quarter, or wider where all gates of
+/// the site together would come to more steps than a key holds.
+#[derive(Debug, Clone, Copy)]
+pub(super) struct Efforts {
+    cost: f64,
+    hours: f64,
+}
+
+impl Efforts {
+    pub(super) fn of(site: &Site) -> Self {
+        let outlets = site.outlets.len() as f64;
+        let step = |least: f64, all: f64| least.max(all / (MOVE_STEPS - 1.0 - outlets).max(1.0));
+        Self {
+            cost: step(COST_STEP, site.outlets.iter().map(|o| o.crew.cost).sum()),
+            hours: step(HOUR_STEP, site.outlets.iter().map(|o| o.crew.hours).sum()),
+        }
+    }
+
+    /// Effort of the moves of one unit: steps of their cost, then of their crew hours, in one whole number. Efforts of
+    /// several units add up.
+    pub(super) fn effort(self, cost: f64, crew_hours: f64) -> f64 {
+        whole(cost / self.cost + 0.5) * MOVE_STEPS + whole(crew_hours / self.hours + 0.5)
     }
 }
 

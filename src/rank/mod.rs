@@ -17,22 +17,25 @@ mod units;
 
 use chrono::NaiveDate;
 
+use crate::intake;
 use crate::mix::limits::{self, Before, Check, Of, Rule, Whole};
 use crate::mix::{Setting, groups};
 use crate::problem::Problem;
 use crate::profile::Profile;
 use crate::site::Site;
+use crate::units::say;
 use crate::withdrawal::{Opening, Sink, zone};
 
 use arrange::ways;
 use choices::{Lanes, Levels, MOST_BLOCKS, Slot};
 use found::Found;
-use goal::Goal;
+use goal::{Efforts, Goal};
 use offers::Offers;
 use ranking::Decoder;
 use search::{Task, WholeRule};
 use seats::Level;
 use tries::Kitchen;
+use units::Unit;
 
 pub use curve::{Curve, Curves, Water};
 pub use goal::Criterion;
@@ -45,8 +48,6 @@ const MOST_JUDGED: u64 = 2_000_000_000;
 const MOST_IDEAS: usize = 2_000_000;
 /// Halvings that find the flow up to which a level keeps out of a layer.
 const HALVINGS: usize = 50;
-/// Curves reach this much beyond the release, for leaks.
-const BEYOND: f64 = 1.1;
 
 /// What a ranking is asked.
 pub struct Question<'a> {
@@ -91,12 +92,11 @@ pub fn rank(question: &Question, progress: Progress) -> Result<Ranking, Stopped>
     let seats =
         seats::levels(site, &groups, &units, profile.pool_m, &mut curves).map_err(Stopped::Refused)?;
     let alone = tries::alone(site, &units, &mut curves);
-    let spilt: f64 = units.iter().filter_map(|u| u.spills_m3s).sum();
-    let mut flows_m3s = [0.0; MOST_BLOCKS];
-    for (flow, block) in flows_m3s.iter_mut().zip(question.blocks) {
-        *flow = (block.1 - spilt).max(0.0);
-    }
-    let most_m3s = BEYOND * (question.blocks.iter().map(|b| b.1).fold(0.0, f64::max) + spilt);
+    let flows_m3s = shared_out(question, &units).map_err(Stopped::Refused)?;
+    // leaks leave the dam beside the release
+    let direct = site.outlets.iter().filter(|o| o.well.is_none());
+    let leaks: f64 = direct.map(|o| intake::leak_m3s(o, profile.pool_m - o.centre_m, 0.5)).sum();
+    let most_m3s = question.blocks.iter().map(|b| b.1).fold(0.0, f64::max) + leaks;
     curves.solve(&profile.column, most_m3s, site.cold_water_c.first().copied());
     let slots = slots(question, &seats, &curves, most_m3s);
     let weights: Vec<f64> = question.blocks.iter().map(|b| b.0).collect();
@@ -124,16 +124,17 @@ pub fn rank(question: &Question, progress: Progress) -> Result<Ranking, Stopped>
         levels: &levels,
         alone: &nearest,
         flows_m3s,
+        efforts: Efforts::of(site),
     };
     let offers = kitchen.offers();
     let (rules, told) = whole_rules(question, !slots.is_empty());
     let counts: Vec<Vec<u64>> = offers.choices.iter().map(choices::Choices::counts).collect();
     let to_judge = ways(&counts, question.steps)[question.steps];
     let ideas = offers.masks.iter().fold(1_usize, |n, (masks, _)| n.saturating_mul(masks.len().max(1)));
-    if to_judge > MOST_JUDGED || ideas > MOST_IDEAS || offers.examined == u64::MAX {
+    if to_judge > MOST_JUDGED || ideas > MOST_IDEAS || offers.examined == u64::MAX || !offers.numbered {
         return Err(Stopped::Refused(Problem::refused(
             "too-many",
-            format!("there are {to_judge} mixes to judge, more than {MOST_JUDGED}"),
+            format!("{to_judge} mixes of {ideas} sets of open outlets are more than can be judged"),
             "take a coarser --step, give max_open of the wells, or leave gates out with --without",
         )));
     }
@@ -163,6 +164,28 @@ pub fn rank(question: &Question, progress: Progress) -> Result<Ranking, Stopped>
     Ok(ranking)
 }
 
+/// What is left to share out in each part of the day beside what spills by itself, m3/s.
+///
+/// # Errors
+/// Where nothing is left.
+fn shared_out(question: &Question, units: &[Unit]) -> Result<[f64; MOST_BLOCKS], Problem> {
+    let spilling: Vec<&Unit> = units.iter().filter(|u| u.spills_m3s.is_some()).collect();
+    let spilt: f64 = spilling.iter().filter_map(|u| u.spills_m3s).sum();
+    let mut flows_m3s = [0.0; MOST_BLOCKS];
+    for (flow, &(_, asked)) in flows_m3s.iter_mut().zip(question.blocks) {
+        *flow = asked - spilt;
+        if *flow <= 0.0 {
+            let names: Vec<&str> =
+                spilling.iter().map(|u| question.site.outlets[u.outlets[0]].name.as_str()).collect();
+            let (asked, spilt) = (say::m3s(asked, 2), say::m3s(spilt, 2));
+            let words =
+                format!("{} spills {spilt} by itself, a release of {asked} leaves nothing", names.join(", "));
+            return Err(Problem::refused("spills", words, "ask for more than spills, or draw the pool down"));
+        }
+    }
+    Ok(flows_m3s)
+}
+
 /// What was found, as mixes with names.
 fn assembled(decoder: &Decoder, found: &Found, told: &[Told], offers: &Offers, to_judge: u64) -> Ranking {
     let mut best: Vec<(f64, u64)> = found.best.iter().copied().filter(|b| b.1 != u64::MAX).collect();
@@ -181,7 +204,11 @@ fn assembled(decoder: &Decoder, found: &Found, told: &[Told], offers: &Offers, t
             let open = mix.asked.first().map_or_else(Vec::new, |a| {
                 a.direct.iter().map(|g| (g.outlet, g.opening)).chain(a.open.iter().copied()).collect()
             });
-            rejected.push(Rejected { check: told.check(missed.nearest.0), count: missed.count, open });
+            let check = told.check(missed.nearest.0);
+            // found as a flow, told as a reach
+            let check =
+                if told.rule == Rule::Undrawn { decoder.reach(missed.nearest.1, check) } else { check };
+            rejected.push(Rejected { check, count: missed.count, open });
         }
     }
     rejected.sort_by_key(|r| (r.check.rule, r.check.of, r.check.item));

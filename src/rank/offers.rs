@@ -51,6 +51,8 @@ pub(super) struct Offers {
     pub(super) misses: Vec<Miss>,
     /// Mixes there are.
     pub(super) examined: u64,
+    /// Whether every mix has a number, and every set of open outlets an index.
+    pub(super) numbered: bool,
 }
 
 impl Kitchen<'_> {
@@ -66,6 +68,7 @@ impl Kitchen<'_> {
             masks: Vec::new(),
             misses: Vec::new(),
             examined,
+            numbered: false,
         };
         for (u, unit) in self.units.iter().enumerate() {
             let others: Vec<Vec<u64>> =
@@ -73,14 +76,17 @@ impl Kitchen<'_> {
             let completions = ways(&others, steps);
             self.unit(unit, &completions, &mut out);
         }
-        number(&mut out);
+        out.numbered = number(&mut out).is_some();
         out
     }
 
     /// Adds the choices and misses of one unit; `completions[k]` counts what the others make of `k` steps.
     fn unit(&self, unit: &Unit, completions: &[u64], out: &mut Offers) {
         let steps = self.steps();
-        let mut choices = Choices { by_share: vec![Vec::new(); steps + 1], units: 1 << out.choices.len() };
+        let mut choices = Choices {
+            by_share: vec![Vec::new(); steps + 1],
+            units: if out.choices.len() < 64 { 1 << out.choices.len() } else { 0 },
+        };
         let mut codes = Vec::new();
         let mut masks: Vec<Vec<usize>> = Vec::new();
         let mut keep = |share: usize, state: Option<usize>, tried: Tried, misses: &mut Vec<Miss>| {
@@ -155,8 +161,11 @@ fn worst(mut broken: Vec<Check>) -> Vec<Check> {
     broken
 }
 
-/// Counts a broken limit, and keeps the smallest miss of each.
+/// Counts a broken limit, and keeps the smallest miss of each. What no mix holds is missed by none.
 fn note(misses: &mut Vec<Miss>, check: Check, count: u64, open: &[(usize, f64)]) {
+    if count == 0 {
+        return;
+    }
     match misses
         .iter_mut()
         .find(|m| m.check.rule == check.rule && m.check.of == check.of && m.check.item == check.item)
@@ -172,23 +181,26 @@ fn note(misses: &mut Vec<Miss>, check: Check, count: u64, open: &[(usize, f64)])
     }
 }
 
-/// Gives every choice its part of the number of a mix and of the index of ideas.
-fn number(offers: &mut Offers) {
-    let mut place = 1_u64;
+/// Gives every choice its part of the number of a mix and of the index of ideas. `None` where there are more than
+/// can be numbered: few steps among many parts make few mixes of many choices.
+fn number(offers: &mut Offers) -> Option<()> {
+    let (mut place, mut ideas) = (1_u64, 1_usize);
     let mut places = Vec::new();
     for codes in offers.codes.iter().rev() {
         places.push(place);
-        place = place.saturating_mul(codes.len().max(1) as u64);
+        place = place.checked_mul(codes.len().max(1) as u64)?;
     }
     places.reverse();
-    let mut ideas = 1_usize;
+    for masks in &mut offers.masks {
+        masks.1 = ideas;
+        ideas = ideas.checked_mul(masks.0.len().max(1))?;
+    }
     for (u, choices) in offers.choices.iter_mut().enumerate() {
-        offers.masks[u].1 = ideas;
         for choice in choices.by_share.iter_mut().flatten() {
             choice.number *= places[u];
-            choice.idea *= ideas;
+            choice.idea *= offers.masks[u].1;
         }
-        ideas = ideas.saturating_mul(offers.masks[u].0.len().max(1));
     }
     offers.places = places;
+    Some(())
 }

@@ -1,12 +1,13 @@
 //! The ranking: what was found, as mixes with names.
 
-use crate::mix::limits::Check;
+use crate::mix::limits::{self, Check};
 use crate::mix::{Asked, Gate};
 
 use super::Question;
-use super::choices::{Levels, MOST_BLOCKS};
+use super::choices::{Levels, MOST_BLOCKS, Part, shared};
 use super::offers::{Code, Offers};
 use super::units::Unit;
+use crate::withdrawal::{Sink, zone};
 
 /// One mix of a ranking, as the search knows it.
 #[derive(Debug, Clone, PartialEq)]
@@ -169,6 +170,34 @@ impl Decoder<'_> {
         Ranked { asked, number, open, levels, temperature_c, oxygen_mg_l }
     }
 
+    /// How far the levels that parts share reach into a layer not to be drawn, in a mix that nearly keeps out of it
+    /// by its flows.
+    pub(super) fn reach(&self, number: u64, check: Check) -> Check {
+        let Question { site, profile, .. } = *self.question;
+        let codes = self.codes(number);
+        let chosen = self.offers.choices.iter().zip(&codes);
+        let parts: Vec<&Part> = chosen
+            .filter_map(|(choices, c)| choices.by_share[c.share].get(c.at))
+            .flat_map(|c| &c.parts)
+            .collect();
+        let mut checks = Vec::new();
+        for (index, slot) in self.levels.slots.iter().enumerate() {
+            let same = || parts.iter().filter(|p| p.slot == index);
+            let curve = slot.curves[same().map(|p| p.code).sum::<usize>()];
+            let Some((centre_m, opening)) = curve.and_then(|c| self.levels.curves.sink(c)) else { continue };
+            for block in 0..self.levels.lanes.blocks {
+                let flow_m3s = same().map(|p| p.flows_m3s[block]).sum();
+                if let Some(zone) = zone(&profile.column, &Sink { centre_m, flow_m3s, opening }, 1.0)
+                    && same().any(|p| p.set)
+                {
+                    limits::level(site, &profile.column, &zone, check.of, &mut checks);
+                }
+            }
+        }
+        let mine = checks.into_iter().filter(|c| c.item == check.item);
+        mine.min_by(|a, b| a.room.total_cmp(&b.room)).unwrap_or(check)
+    }
+
     /// Time mean of temperature (C) and oxygen (mg/L) of a choice for each unit.
     fn water(&self, codes: &[Code]) -> (f64, Option<f64>) {
         let lanes = self.levels.lanes;
@@ -183,7 +212,7 @@ impl Decoder<'_> {
             unknown |= choice.unknown;
             parts.extend(&choice.parts);
         }
-        unknown |= self.levels.join(&parts, &mut sums);
+        unknown |= self.levels.join(&parts, shared(&parts), &mut sums);
         let mean = |lane: usize| -> f64 {
             let weights = self.levels.weights.iter().enumerate();
             weights.map(|(b, w)| w * sums[3 * b + lane] / sums[3 * b]).sum()

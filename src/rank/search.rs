@@ -15,12 +15,14 @@ use rayon::prelude::*;
 
 use super::arrange::{arranged, ways};
 use super::choices::{Choice, Choices, Levels, MOST_BLOCKS, Part};
-use super::found::{Found, higher, lower};
-use super::goal::Goal;
-use super::tail::{Block, Days, ROWS, Tail};
+use super::found::{Found, lower};
+use super::goal::{Days, Goal};
+use super::tail::{Block, ROWS, Tail, fill, greatest, least};
 
 /// A rule is kept when it is missed by less than this share of its bound: round-off.
 const ROUND_OFF: f64 = 1e-9;
+/// What spans are eased by, C, mg/L and shares (choice: far above round-off, far below any bin).
+const SAFE: f64 = 1e-9;
 /// The coarser search takes at most this many steps (choice).
 const COARSE_STEPS: usize = 10;
 /// A coarser search is made when there are more mixes than this (choice).
@@ -121,10 +123,8 @@ fn walked(task: &Task, to_beat: &Found) -> Option<Found> {
         }
         found
     };
-    let found = (0..LOTS.min(first.len()))
-        .into_par_iter()
-        .map(lot)
-        .reduce(|| to_beat.clone(), |a, b| a.merge(&b));
+    let found =
+        (0..LOTS.min(first.len())).into_par_iter().map(lot).reduce(|| to_beat.clone(), |a, b| a.merge(&b));
     (!stopped.load(Ordering::Relaxed)).then_some(found)
 }
 
@@ -135,6 +135,23 @@ struct Sums<'a> {
     idea: usize,
     number: u64,
     parts: Vec<&'a Part>,
+    /// Slots of the parts, and of those with several, as bits.
+    slots: u64,
+    shared: u64,
+}
+
+impl Sums<'_> {
+    fn nothing(lanes: usize) -> Self {
+        Self {
+            lanes: vec![0.0; lanes],
+            unknown: false,
+            idea: 0,
+            number: 0,
+            parts: Vec::new(),
+            slots: 0,
+            shared: 0,
+        }
+    }
 }
 
 /// A walk through the head.
@@ -150,15 +167,13 @@ impl<'a> Walk<'a> {
     fn begin(&self, share: usize, choice: &'a Choice, found: &mut Found) {
         let lanes = self.task.levels.lanes.count();
         // one set of sums for each depth, made once
-        let mut stack: Vec<Sums<'a>> = (0..=self.head.len() + 1)
-            .map(|_| Sums { lanes: vec![0.0; lanes], unknown: false, idea: 0, number: 0, parts: Vec::new() })
-            .collect();
+        let mut stack: Vec<Sums<'a>> = (0..=self.head.len() + 1).map(|_| Sums::nothing(lanes)).collect();
         put(&mut stack, 0, choice);
         self.deeper(1, self.task.steps - share, &mut stack, &mut Days::default(), found);
     }
 
     /// Goes through the choices of the head from `depth` on, `left` steps of the release still to be given.
-    fn deeper(&self, depth: usize, left: usize, stack: &mut [Sums<'a>], days: &mut Days, found: &mut Found) {
+    fn deeper(&self, depth: usize, left: usize, stack: &mut [Sums<'a>], days: &mut Days<ROWS>, found: &mut Found) {
         if self.completions[depth][left] == 0 {
             return;
         }
@@ -174,14 +189,14 @@ impl<'a> Walk<'a> {
     }
 
     /// The head is complete: what its parts share is made good, and every row of the tail judged.
-    fn complete(&self, left: usize, head: &mut Sums<'a>, days: &mut Days, found: &mut Found) {
+    fn complete(&self, left: usize, head: &mut Sums<'a>, days: &mut Days<ROWS>, found: &mut Found) {
         if self.undrawn {
             let completions = self.completions[self.head.len()][left];
             if self.draws_undrawn(head, completions, found) {
                 return;
             }
         }
-        head.unknown |= self.task.levels.join(&head.parts, &mut head.lanes);
+        head.unknown |= self.task.levels.join(&head.parts, head.shared, &mut head.lanes);
         for block in &self.tail.by_share[left] {
             match self.task.levels.lanes.blocks {
                 1 => self.judge::<1>(block, head, days, found),
@@ -204,6 +219,9 @@ impl<'a> Walk<'a> {
                     continue;
                 }
                 let same = || head.parts[i..].iter().filter(|p| p.slot == part.slot);
+                if !same().any(|p| p.set) {
+                    continue;
+                }
                 let code: usize = same().map(|p| p.code).sum();
                 let kept = levels.slots[part.slot].kept_m3s[layer][code];
                 for block in 0..levels.lanes.blocks {
@@ -225,7 +243,7 @@ impl<'a> Walk<'a> {
     /// Judges the head with every row of a block: first, whether any of them can be the best of anything; then what
     /// can be computed side by side; then what each mix is the best of.
     #[inline]
-    fn judge<const B: usize>(&self, block: &Block, head: &Sums, days: &mut Days, found: &mut Found) {
+    fn judge<const B: usize>(&self, block: &Block, head: &Sums, days: &mut Days<ROWS>, found: &mut Found) {
         let Task { levels, goal, rules, .. } = self.task;
         let statistics = if B == 1 { 1 } else { 3 };
         let unknown = head.unknown || block.any_unknown();
@@ -234,31 +252,49 @@ impl<'a> Walk<'a> {
             return;
         }
         found.judged += block.rows as u64;
-        days.fill::<B>(block, &head.lanes, levels);
-        let (mut far, mut key) = ([0.0; ROWS], [0.0; ROWS]);
-        for i in 0..ROWS {
-            let day = days.day(i);
-            far[i] = goal.distance_c(&day, statistics);
-            key[i] = goal.key(&day, statistics, far[i]);
+        fill::<B>(days, block, &head.lanes, levels);
+        let far = goal.distances_c(days, statistics);
+        let mut key = goal.keys(days, statistics, &far);
+        if unknown {
+            let without = goal.keys_unknown(days, statistics, &far);
+            for i in (0..ROWS).filter(|&i| head.unknown || block.unknown[i]) {
+                key[i] = without[i];
+            }
+        }
+        let (t, o) = (&days.low_c[0], &days.oxygen_mg_l[0]);
+        let number = |i: usize| head.number + block.number[i];
+        if rules.is_empty() && !unknown {
+            // rows that are not there repeat the last, so they decide nothing
+            let best = &mut found.best[head.idea..];
+            let first = least(&key);
+            if block.ideas.iter().any(|&idea| first <= best[idea].0) {
+                for i in 0..block.rows {
+                    lower(&mut best[block.idea[i]], (key[i], number(i)));
+                }
+            }
+            let inside = least(t) > found.coldest.0
+                && greatest(t) < found.warmest.0
+                && least(o) > found.least_oxygen.0
+                && greatest(o) < found.most_oxygen.0;
+            if !inside {
+                (0..block.rows).for_each(|i| found.ends(t[i], Some(o[i]), number(i)));
+            }
+            if !found.beaten_in_both(least(&far), greatest(o)) {
+                (0..block.rows).for_each(|i| found.trade(far[i], (o[i], number(i))));
+            }
+            return;
         }
         for i in 0..block.rows {
-            let number = head.number + block.number[i];
-            let (t, o) = (days.temperature_c[0][i], days.oxygen_mg_l[0][i]);
-            if !rules.is_empty() && !self.keeps(head, block, i, number, t, found) {
+            if !rules.is_empty() && !self.keeps(head, block, i, number(i), t[i], found) {
                 found.refused += 1;
                 continue;
             }
             let known = !(head.unknown || block.unknown[i]);
-            if !known {
-                key[i] = goal.key_unknown(&days.day(i), statistics, far[i]);
-            }
-            lower(&mut found.best[head.idea + block.idea[i]], (key[i], number));
-            lower(&mut found.coldest, (t, number));
-            higher(&mut found.warmest, (t, number));
-            if known {
-                lower(&mut found.least_oxygen, (o, number));
-                higher(&mut found.most_oxygen, (o, number));
-                found.trade(far[i], (o, number));
+            lower(&mut found.best[head.idea + block.idea[i]], (key[i], number(i)));
+            let oxygen = known.then_some(o[i]);
+            found.ends(t[i], oxygen, number(i));
+            if let Some(oxygen) = oxygen {
+                found.trade(far[i], (oxygen, number(i)));
             }
         }
     }
@@ -270,20 +306,31 @@ impl<'a> Walk<'a> {
         let goal = self.task.goal;
         let statistics = if B == 1 { 1 } else { 3 };
         let (span, least_mg_l) = block.span::<B>(&head.lanes, self.task.levels);
-        let [coldest, warmest] = span.temperature_c[0];
-        let inside = coldest > found.coldest.0
-            && warmest < found.warmest.0
-            && least_mg_l > found.least_oxygen.0
-            && span.oxygen_mg_l[0] < found.most_oxygen.0;
+        let inside = span.low_c[0][0] > found.coldest.0 + SAFE
+            && span.high_c[0][0] < found.warmest.0 - SAFE
+            && least_mg_l > found.least_oxygen.0 + SAFE
+            && span.oxygen_mg_l[0][0] < found.most_oxygen.0 - SAFE;
         if !inside {
             return false;
         }
-        let far = goal.distance_c(&span, statistics);
-        if !found.beaten_in_both(far, span.oxygen_mg_l[0]) {
+        let [far] = goal.distances_c(&span, statistics);
+        if !found.beaten_in_both((far - SAFE).max(0.0), span.oxygen_mg_l[0][0] + SAFE) {
             return false;
         }
-        let key = goal.key(&span, statistics, far);
+        let [key] = goal.keys(&Self::eased(span), statistics, &[(far - SAFE).max(0.0)]);
         block.ideas.iter().all(|idea| key > found.best[head.idea + idea].0)
+    }
+
+    /// A span made a hair better than it is, so that no round-off can make a row better than its span.
+    #[inline]
+    fn eased(mut span: Days<1>) -> Days<1> {
+        for statistic in 0..3 {
+            span.low_c[statistic][0] -= SAFE;
+            span.high_c[statistic][0] += SAFE;
+        }
+        span.oxygen_mg_l.iter_mut().for_each(|o| o[0] += SAFE);
+        span.cold_share[0] -= SAFE;
+        span
     }
 
     /// Whether a mix keeps the rules of the whole; each one it misses is counted.
@@ -304,8 +351,7 @@ impl<'a> Walk<'a> {
         for (rule, missed) in self.task.rules.iter().zip(&mut found.missed) {
             let (miss, bound) = match *rule {
                 WholeRule::Solids(most) => {
-                    let worst =
-                        blocks.clone().map(|b| sum(lanes.solids(b)) / sum(3 * b)).fold(0.0, f64::max);
+                    let worst = blocks.clone().map(|b| sum(lanes.solids(b)) / sum(3 * b)).fold(0.0, f64::max);
                     (worst - most, most)
                 }
                 WholeRule::ShareMin(rule, least) => {
@@ -343,6 +389,8 @@ fn put<'a>(stack: &mut [Sums<'a>], depth: usize, choice: &'a Choice) {
     after.unknown = before.unknown || choice.unknown;
     after.idea = before.idea + choice.idea;
     after.number = before.number + choice.number;
+    after.slots = before.slots | choice.slots;
+    after.shared = before.shared | (before.slots & choice.slots);
     after.parts.clear();
     after.parts.extend_from_slice(&before.parts);
     after.parts.extend(&choice.parts);

@@ -13,6 +13,9 @@ use super::units::{Unit, openings};
 /// Most openings of the outlets of one level, all taken together (choice).
 const MOST_CODES: usize = 100_000;
 
+/// Most levels that several units draw through: each is a bit.
+const MOST_SLOTS: usize = 64;
+
 /// What an outlet that draws is to its level.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub(super) enum Member {
@@ -102,6 +105,13 @@ pub(super) fn levels(
                 slots += 1;
                 slots - 1
             });
+            if slots > MOST_SLOTS {
+                return Err(Problem::refused(
+                    "too-many",
+                    format!("more than {MOST_SLOTS} levels are shared by wells and outlets"),
+                    "leave gates out with --without",
+                ));
+            }
             let mut level = Level { outlets: outlets.clone(), openings, curves: Vec::new(), slot };
             level.curves = (0..count)
                 .map(|code| {

@@ -1,10 +1,10 @@
 //! The parts that stand alone, taken together: rows by the share they take, in blocks judged side by side.
 
 use super::choices::{Choice, Choices, Lanes, Levels};
-use super::goal::Day;
+use super::goal::Days;
 
 /// Rows of a block (choice): enough for side by side, few enough that their water is alike.
-pub(super) const ROWS: usize = 16;
+pub(super) const ROWS: usize = 8;
 
 /// Values of the rows of a block; rows that are not there repeat the last.
 type Column = [f64; ROWS];
@@ -64,16 +64,10 @@ impl Block {
 
     /// What all rows together span, with what the head adds; and the least of their oxygen, mg/L.
     #[inline]
-    pub(super) fn span<const B: usize>(&self, head: &[f64], levels: &Levels) -> (Day, f64) {
+    pub(super) fn span<const B: usize>(&self, head: &[f64], levels: &Levels) -> (Days<1>, f64) {
         let lanes = levels.lanes;
         let ends = |lane: usize| [head[lane] + self.spans[lane][0], head[lane] + self.spans[lane][1]];
-        let mut day = Day {
-            temperature_c: [[0.0; 2], [f64::NEG_INFINITY; 2], [f64::INFINITY; 2]],
-            oxygen_mg_l: [0.0, f64::INFINITY],
-            cold_share: 0.0,
-            cost: ends(lanes.cost())[0],
-            hours: ends(lanes.hours())[0],
-        };
+        let mut days = Days::<1>::default();
         let (mut least_mg_l, mut mean_flow) = (0.0, 0.0);
         for b in 0..B {
             let [flow, heat, oxygen] = [3 * b, 3 * b + 1, 3 * b + 2].map(ends);
@@ -84,19 +78,29 @@ impl Block {
             let weight = if B == 1 { 1.0 } else { levels.weights[b] };
             mean_flow += weight * flow[1];
             least_mg_l += weight * oxygen[0] * per[1];
-            day.oxygen_mg_l[0] += weight * oxygen[1] * per[0];
-            day.temperature_c[0][0] += weight * low;
-            day.temperature_c[0][1] += weight * high;
+            days.oxygen_mg_l[0][0] += weight * oxygen[1] * per[0];
+            days.low_c[0][0] += weight * low;
+            days.high_c[0][0] += weight * high;
             if B > 1 {
-                day.oxygen_mg_l[1] = day.oxygen_mg_l[1].min(oxygen[1] * per[0]);
-                for (end, t) in [low, high].into_iter().enumerate() {
-                    day.temperature_c[1][end] = day.temperature_c[1][end].max(t);
-                    day.temperature_c[2][end] = day.temperature_c[2][end].min(t);
+                let keep = |kept: &mut f64, new: f64, better: bool| {
+                    if b == 0 || better {
+                        *kept = new;
+                    }
+                };
+                let aired = oxygen[1] * per[0];
+                let better = aired < days.oxygen_mg_l[1][0];
+                keep(&mut days.oxygen_mg_l[1][0], aired, better);
+                for (kept, t) in [(&mut days.low_c, low), (&mut days.high_c, high)] {
+                    let [_, greatest, least] = kept;
+                    let (warmer, colder) = (t > greatest[0], t < least[0]);
+                    keep(&mut greatest[0], t, warmer);
+                    keep(&mut least[0], t, colder);
                 }
             }
         }
-        day.cold_share = ends(lanes.cold())[0] / mean_flow;
-        (day, least_mg_l)
+        days.cold_share[0] = ends(lanes.cold())[0] / mean_flow;
+        days.effort[0] = ends(lanes.effort())[0];
+        (days, least_mg_l)
     }
 }
 
@@ -119,79 +123,63 @@ impl Tail {
     }
 }
 
-/// Days of a block's rows.
-#[derive(Debug, Clone)]
-pub(super) struct Days {
-    /// Time mean, greatest and least temperature, C.
-    pub(super) temperature_c: [Column; 3],
-    /// Time mean and least oxygen, mg/L.
-    pub(super) oxygen_mg_l: [Column; 2],
-    cold_share: Column,
-    cost: Column,
-    hours: Column,
-}
-
-impl Default for Days {
-    fn default() -> Self {
-        let none = [0.0; ROWS];
-        Self {
-            temperature_c: [none; 3],
-            oxygen_mg_l: [none; 2],
-            cold_share: none,
-            cost: none,
-            hours: none,
-        }
-    }
-}
-
-impl Days {
-    /// Days of a block's rows, with what the head adds to each.
-    #[inline]
-    pub(super) fn fill<const B: usize>(&mut self, block: &Block, head: &[f64], levels: &Levels) {
-        let lanes = levels.lanes;
-        let mut mean_flow = [0.0; ROWS];
-        for b in 0..B {
-            let [flow, heat, oxygen] = [3 * b, 3 * b + 1, 3 * b + 2].map(|lane| &block.lanes[lane]);
-            let [head_flow, head_heat, head_oxygen] = [head[3 * b], head[3 * b + 1], head[3 * b + 2]];
-            let weight = if B == 1 { 1.0 } else { levels.weights[b] };
-            for i in 0..ROWS {
-                let flow = head_flow + flow[i];
-                let per = 1.0 / flow;
-                let t = (head_heat + heat[i]) * per;
-                let o = (head_oxygen + oxygen[i]) * per;
-                if B == 1 {
-                    (self.temperature_c[0][i], self.oxygen_mg_l[0][i], mean_flow[i]) = (t, o, flow);
-                    continue;
-                }
-                let first = b == 0;
-                let sum = |so_far: f64, more: f64| if first { weight * more } else { so_far + weight * more };
-                mean_flow[i] = sum(mean_flow[i], flow);
-                self.temperature_c[0][i] = sum(self.temperature_c[0][i], t);
-                self.oxygen_mg_l[0][i] = sum(self.oxygen_mg_l[0][i], o);
-                let [_, greatest, least] = &mut self.temperature_c;
-                greatest[i] = if first || t > greatest[i] { t } else { greatest[i] };
-                least[i] = if first || t < least[i] { t } else { least[i] };
-                let least = &mut self.oxygen_mg_l[1][i];
-                *least = if first || o < *least { o } else { *least };
-            }
-        }
-        let [cold, cost, hours] = [lanes.cold(), lanes.cost(), lanes.hours()].map(|lane| &block.lanes[lane]);
-        let [head_cold, head_cost, head_hours] = [lanes.cold(), lanes.cost(), lanes.hours()].map(|l| head[l]);
+/// Fills in the days of a block's rows, with what the head adds to each.
+#[inline]
+pub(super) fn fill<const B: usize>(days: &mut Days<ROWS>, block: &Block, head: &[f64], levels: &Levels) {
+    let lanes = levels.lanes;
+    // mean of the flow; of a steady day one over it
+    let mut flows = [0.0; ROWS];
+    for b in 0..B {
+        let [flow, heat, oxygen] = [3 * b, 3 * b + 1, 3 * b + 2].map(|lane| &block.lanes[lane]);
+        let [head_flow, head_heat, head_oxygen] = [head[3 * b], head[3 * b + 1], head[3 * b + 2]];
+        let weight = if B == 1 { 1.0 } else { levels.weights[b] };
+        let (mut per, mut t, mut o) = ([0.0; ROWS], [0.0; ROWS], [0.0; ROWS]);
         for i in 0..ROWS {
-            self.cold_share[i] = (head_cold + cold[i]) / mean_flow[i];
-            self.cost[i] = head_cost + cost[i];
-            self.hours[i] = head_hours + hours[i];
+            per[i] = 1.0 / (head_flow + flow[i]);
+        }
+        for i in 0..ROWS {
+            t[i] = (head_heat + heat[i]) * per[i];
+            o[i] = (head_oxygen + oxygen[i]) * per[i];
+        }
+        if B == 1 {
+            (days.low_c[0], days.oxygen_mg_l[0], flows) = (t, o, per);
+            continue;
+        }
+        for i in 0..ROWS {
+            let first = b == 0;
+            let sum = |so_far: f64, more: f64| if first { weight * more } else { so_far + weight * more };
+            flows[i] = sum(flows[i], head_flow + flow[i]);
+            let [mean, greatest, least] = &mut days.low_c;
+            mean[i] = sum(mean[i], t[i]);
+            greatest[i] = if first || t[i] > greatest[i] { t[i] } else { greatest[i] };
+            least[i] = if first || t[i] < least[i] { t[i] } else { least[i] };
+            let [mean, least] = &mut days.oxygen_mg_l;
+            mean[i] = sum(mean[i], o[i]);
+            least[i] = if first || o[i] < least[i] { o[i] } else { least[i] };
         }
     }
+    for statistic in 0..if B == 1 { 1 } else { 3 } {
+        days.high_c[statistic] = days.low_c[statistic];
+    }
+    let [cold, effort] = [lanes.cold(), lanes.effort()].map(|lane| &block.lanes[lane]);
+    let [head_cold, head_effort] = [lanes.cold(), lanes.effort()].map(|l| head[l]);
+    for i in 0..ROWS {
+        let cold = head_cold + cold[i];
+        days.cold_share[i] = if B == 1 { cold * flows[i] } else { cold / flows[i] };
+    }
+    for i in 0..ROWS {
+        days.effort[i] = head_effort + effort[i];
+    }
+}
 
-    #[inline]
-    pub(super) fn day(&self, i: usize) -> Day {
-        Day {
-            temperature_c: self.temperature_c.each_ref().map(|t| [t[i]; 2]),
-            oxygen_mg_l: self.oxygen_mg_l.each_ref().map(|o| o[i]),
-            cold_share: self.cold_share[i],
-            cost: self.cost[i],
-            hours: self.hours[i],
-        }
-    }
+/// The least of a block's values.
+#[inline]
+pub(super) fn least(values: &Column) -> f64 {
+    values.iter().fold(f64::INFINITY, |a, &b| if b < a { b } else { a })
+}
+
+/// The greatest of a block's values.
+#[inline]
+pub(super) fn greatest(values: &Column) -> f64 {
+    values.iter().fold(f64::NEG_INFINITY, |a, &b| if b > a { b } else { a })
 }

@@ -12,6 +12,7 @@ use crate::withdrawal::{CrestForm, Sink, zone};
 use super::Question;
 use super::choices::{Choice, Levels, MOST_BLOCKS, Part};
 use super::curve::Curves;
+use super::goal::Efforts;
 use super::seats::{Level, Member};
 use super::units::{State, Unit, openings};
 
@@ -27,6 +28,7 @@ pub(super) struct Kitchen<'a> {
     pub(super) alone: &'a (dyn Fn(usize, f64) -> Option<usize> + Sync),
     /// Release shared out in each block, m3/s.
     pub(super) flows_m3s: [f64; MOST_BLOCKS],
+    pub(super) efforts: Efforts,
 }
 
 /// One state of a unit at one share, tried.
@@ -60,14 +62,10 @@ impl Kitchen<'_> {
                     }
                     None => 0.0,
                 };
-                limits::passing(
-                    site,
-                    o,
-                    if unit.spills_m3s.is_some() { 1.0 } else { 0.0 },
-                    flow,
-                    pool_m,
-                    &mut checks,
-                );
+                // what spills by itself is no choice, so it breaks nothing; a leak is no reserved flow
+                if unit.spills_m3s.is_none() {
+                    limits::passing(site, o, 0.0, 0.0, pool_m, &mut checks);
+                }
                 (flow > 0.0).then_some((
                     o,
                     if unit.spills_m3s.is_some() { 1.0 } else { 0.0 },
@@ -75,8 +73,7 @@ impl Kitchen<'_> {
                 ))
             })
             .collect();
-        // what spills by itself is no choice, so it breaks nothing
-        checks.retain(|c| c.broken() && unit.spills_m3s.is_none());
+        checks.retain(Check::broken);
         self.tried(unit, &flows, checks)
     }
 
@@ -129,7 +126,8 @@ impl Kitchen<'_> {
                     limits::well(site, well, open, total, head_m, &mut checks);
                     for gate in gates {
                         let Gate { outlet, opening, flow_m3s } = gate;
-                        limits::passing(site, outlet, opening, flow_m3s, pool_m, &mut checks);
+                        let given = if opening > 0.0 { flow_m3s } else { 0.0 };
+                        limits::passing(site, outlet, opening, given, pool_m, &mut checks);
                         give(outlet, opening, flow_m3s);
                     }
                     for &outlet in unit.outlets.iter().filter(|o| !flows.iter().any(|f| f.0 == **o)) {
@@ -192,14 +190,22 @@ impl Kitchen<'_> {
         mut broken: Vec<Check>,
     ) -> Tried {
         let lanes = self.levels.lanes;
-        let mut choice =
-            Choice { lanes: vec![0.0; lanes.count()], unknown: false, idea: 0, number: 0, parts: Vec::new() };
+        let mut choice = Choice {
+            lanes: vec![0.0; lanes.count()],
+            unknown: false,
+            idea: 0,
+            number: 0,
+            parts: Vec::new(),
+            slots: 0,
+        };
         let mut touched: Vec<usize> = flows.iter().map(|f| self.level_of[f.0]).collect();
         touched.sort_unstable();
         touched.dedup();
         for level in touched {
             let seat = &self.seats[level];
             let mine = || flows.iter().filter(|f| self.level_of[f.0] == level);
+            // what nobody sets draws what it draws
+            let set = mine().find(|f| f.1 > 0.0 && unit.spills_m3s.is_none()).map(|f| f.0);
             let code: usize = mine()
                 .map(|f| seat.code(f.0, if f.1 > 0.0 { Member::Open(f.1) } else { Member::Leak }))
                 .sum();
@@ -212,7 +218,7 @@ impl Kitchen<'_> {
             match seat.slot {
                 None => {
                     choice.unknown |= self.levels.add(seat.curves[code], &by_block, &mut choice.lanes);
-                    self.undrawn(mine().map(|f| f.0).next(), seat.curves[code], &by_block, &mut broken);
+                    self.undrawn(set, seat.curves[code], &by_block, &mut broken);
                 }
                 Some(slot) => {
                     let mut alone = vec![0.0; lanes.count()];
@@ -220,12 +226,14 @@ impl Kitchen<'_> {
                     for (lane, add) in choice.lanes.iter_mut().zip(&alone) {
                         *lane += add;
                     }
-                    choice.parts.push(Part { slot, code, flows_m3s: by_block, alone, alone_unknown });
+                    choice.slots |= 1 << slot;
+                    let set = set.is_some();
+                    choice.parts.push(Part { slot, code, set, flows_m3s: by_block, alone, alone_unknown });
                 }
             }
         }
         for (rule, share) in self.site().limits.shares.iter().enumerate() {
-            for flow in flows.iter().filter(|f| share.outlets.contains(&f.0)) {
+            for flow in flows.iter().filter(|f| f.1 > 0.0 && share.outlets.contains(&f.0)) {
                 for block in 0..lanes.blocks {
                     choice.lanes[lanes.share(rule, block)] += flow.2[block];
                 }
@@ -298,7 +306,7 @@ impl Kitchen<'_> {
         let mut checks = Vec::new();
         let moves = limits::moves(self.site(), &from, &to, &mut checks);
         let at = self.levels.lanes;
-        lanes[at.cost()] += moves.cost;
+        lanes[at.effort()] += self.efforts.effort(moves.cost, moves.crew_hours);
         lanes[at.hours()] += moves.crew_hours;
         lanes[at.moves()] += moves.count as f64;
         broken.extend(checks.into_iter().filter(Check::broken));

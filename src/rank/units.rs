@@ -39,13 +39,17 @@ impl State {
     }
 }
 
-/// Openings the crew can set at an outlet besides shut, from the smallest; fully open where any flow can be set.
+/// Openings the crew can set at an outlet besides shut, from the smallest; fully open where any flow can be set. None
+/// where it can only stand shut.
 pub(super) fn openings(site: &Site, outlet: usize) -> Vec<f64> {
-    let mut out: Vec<f64> =
-        site.outlets[outlet].positions.iter().map(|p| p.opening).filter(|o| *o > 0.0).collect();
+    let positions = &site.outlets[outlet].positions;
+    if positions.is_empty() {
+        return vec![1.0];
+    }
+    let mut out: Vec<f64> = positions.iter().map(|p| p.opening).filter(|o| *o > 0.0).collect();
     out.sort_by(f64::total_cmp);
     out.dedup_by(|a, b| (*a - *b).abs() < SAME_OPENING);
-    if out.is_empty() { vec![1.0] } else { out }
+    out
 }
 
 /// The units of a site in the fixed order: by the elevation and name of the lowest outlet. Outlets left out are

@@ -6,6 +6,7 @@
 mod layering;
 mod mix;
 mod pool;
+mod rejected;
 mod table;
 mod targets;
 mod units;

@@ -296,8 +296,6 @@ fn published_quantiles_of_known_lists() {
     assert_relative_eq!(high, 9.0, max_relative = 1e-12);
     assert_eq!(spread(&[7.0]).band_c(), Some((7.0, 7.0)));
     assert_eq!(spread(&[]).band_c(), None);
-    assert_eq!(four.share(|t, _| t > 1.5), Some(0.75));
-    assert_eq!(four.share(|t, o| t > 1.5 && o.is_some_and(|o| o < 3.0)), Some(0.5));
     let holed = Spread { cases: vec![(1.0, Some(5.0)), (2.0, None)] };
     assert!(holed.band_c().is_some() && holed.band_oxygen_mg_l().is_none());
 }

@@ -9,5 +9,5 @@ mod limits;
 mod order;
 mod overlaps;
 mod rules;
-mod sites;
+pub(crate) mod sites;
 mod wells;

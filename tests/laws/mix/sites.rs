@@ -18,7 +18,7 @@ const PLACES: [f64; 9] = [0.06, 0.25, 0.25, 0.265, 0.28, 0.5, 0.515, 0.75, 0.88]
 const NAMES: [&str; 7] = ["C", "A", "G", "F", "B", "E", "D"];
 
 /// A day inside every target's span below.
-pub(super) fn day() -> NaiveDate {
+pub(crate) fn day() -> NaiveDate {
     NaiveDate::from_ymd_opt(2025, 7, 14).unwrap()
 }
 
@@ -63,13 +63,13 @@ impl Ready {
     }
 }
 
-pub(super) fn checked(raw: &Raw) -> Site {
+pub(crate) fn checked(raw: &Raw) -> Site {
     let (site, problems) = Site::check(raw);
     site.unwrap_or_else(|| panic!("{problems:?}"))
 }
 
 /// A cast that reads the water where it was sampled.
-pub(super) fn cast(water: &Pool) -> profile::Raw {
+pub(crate) fn cast(water: &Pool) -> profile::Raw {
     let rows = water.samples.iter().enumerate().map(|(i, s)| profile::RawRow {
         line: i + 4,
         elevation_m: Some(s.elevation_m),
@@ -92,7 +92,7 @@ pub(super) fn cast(water: &Pool) -> profile::Raw {
 }
 
 /// A box of water that reaches a little above the surface, without outlets.
-pub(super) fn basin(water: &Pool) -> Raw {
+pub(crate) fn basin(water: &Pool) -> Raw {
     let top_m = water.surface_m + 2.0;
     let row = |elevation_m: f64, area_m2: f64| RawRow { elevation_m, area_m2, ..RawRow::default() };
     let mut raw = Raw {
@@ -110,7 +110,7 @@ pub(super) fn basin(water: &Pool) -> Raw {
 }
 
 /// A rectangular port.
-pub(super) fn port(name: &str, centre_m: f64, height_m: f64, width_m: f64) -> RawOutlet {
+pub(crate) fn port(name: &str, centre_m: f64, height_m: f64, width_m: f64) -> RawOutlet {
     RawOutlet {
         name: Some(name.into()),
         centre_m: Some(centre_m),

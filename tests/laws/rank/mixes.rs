@@ -1,0 +1,279 @@
+//! One mix judged from scratch: what it gives, which limits it breaks, where it stands in the order.
+
+use std::rc::Rc;
+
+use gatemix::mix::Asked;
+use gatemix::mix::limits::{self, Before, Check, Rule, Whole};
+use gatemix::mix::{Gate, Level};
+use gatemix::rank::{Criterion, Question};
+use gatemix::target::Statistic;
+use gatemix::withdrawal::Sink;
+
+use super::parts::{Part, Trial, Works, setting, worst};
+
+/// Round-off that the order allows for, in steps of a bin and in C or mg/L.
+const ROUND_OFF: f64 = 1e-9;
+/// A figure this near to the end of a bin could fall on either side.
+const EDGE: f64 = 5e-10;
+
+/// A mix: state and share of each part.
+pub(super) type Number = Vec<(usize, usize)>;
+
+/// What a mix without a broken limit gives.
+#[derive(Debug, Clone)]
+pub(super) struct Water {
+    /// Time means.
+    pub(super) temperature_c: f64,
+    pub(super) oxygen_mg_l: Option<f64>,
+    pub(super) distance_c: f64,
+    pub(super) key: f64,
+    /// Some criterion stands at the end of a bin.
+    pub(super) at_edge: bool,
+}
+
+/// A mix judged.
+#[derive(Debug)]
+pub(super) struct Judged {
+    /// Outlets open or spilling.
+    pub(super) open: Vec<usize>,
+    /// Limits broken, each at its worst; `water` where there is none.
+    pub(super) broken: Vec<Check>,
+    pub(super) water: Option<Water>,
+    /// Layers that shared levels draw: which, by how much flow too much (m3/s), and how far (m, below zero).
+    pub(super) drawn: Vec<(usize, f64, f64)>,
+    /// A level shared by parts that comes this near to a layer not to be drawn could be told either way.
+    pub(super) at_edge: bool,
+}
+
+impl Works<'_> {
+    fn trials(&self, number: &Number) -> Vec<Rc<Trial>> {
+        number.iter().enumerate().map(|(part, &(share, state))| self.trial(part, state, share)).collect()
+    }
+
+    /// What the mix is, as it would be asked for.
+    pub(super) fn asked(&self, number: &Number) -> Vec<Asked> {
+        let trials = self.trials(number);
+        let one = |block: usize| {
+            let mut asked = Asked::default();
+            for (part, trial) in self.parts.iter().zip(&trials) {
+                if let Some(flow_m3s) = part.spills_m3s {
+                    asked.direct.push(Gate { outlet: part.outlets[0], opening: 1.0, flow_m3s });
+                }
+                let flow_m3s = trial.totals_m3s[block];
+                match part.well.filter(|_| !trial.open.is_empty()) {
+                    Some(well) => {
+                        asked.open.extend(&trial.open);
+                        asked.totals.push((well, flow_m3s));
+                    }
+                    None => asked.direct.extend(trial.open.iter().map(|&(outlet, opening)| Gate {
+                        outlet,
+                        opening,
+                        flow_m3s,
+                    })),
+                }
+            }
+            asked
+        };
+        (0..self.question.blocks.len()).map(one).collect()
+    }
+
+    pub(super) fn judge(&self, number: &Number) -> Judged {
+        let trials = self.trials(number);
+        let trials: Vec<&Trial> = trials.iter().map(Rc::as_ref).collect();
+        let spills = self.parts.iter().filter(|p| p.spills_m3s.is_some()).map(|p| p.outlets[0]);
+        let mut open: Vec<usize> = trials.iter().flat_map(|t| &t.open).map(|o| o.0).chain(spills).collect();
+        open.sort_unstable();
+        let own: Vec<Check> = trials.iter().flat_map(|t| t.broken.clone()).collect();
+        if !own.is_empty() {
+            return Judged { open, broken: worst(own), water: None, drawn: Vec::new(), at_edge: false };
+        }
+        let blocks: Vec<Vec<Level>> =
+            (0..self.question.blocks.len()).map(|b| self.levels(&setting(&trials, b))).collect();
+        let (mut checks, mut excess) = (Vec::new(), Vec::new());
+        let mut at_edge = false;
+        for level in blocks.iter().flatten() {
+            at_edge |= self.undrawn_together(level, &trials, &mut checks);
+            let over = |c: &Check| level.sink.flow_m3s - self.kept_m3s(&level.sink, c.item);
+            let first = excess.len();
+            excess.extend(checks[first..].iter().map(|c| (c.item, over(c))));
+        }
+        if !checks.is_empty() {
+            let broken = worst(checks);
+            let most = |item: usize| excess.iter().filter(|e| e.0 == item).map(|e| e.1).fold(0.0, f64::max);
+            let drawn = broken.iter().map(|c| (c.item, most(c.item), c.room)).collect();
+            return Judged { open, broken, water: None, drawn, at_edge };
+        }
+        let (water, broken) = self.whole(&blocks, &trials);
+        let water = broken.is_empty().then_some(water);
+        Judged { open, broken, water, drawn: Vec::new(), at_edge }
+    }
+
+    /// Layers that a shared level draws; whether it is too near to tell.
+    fn undrawn_together(&self, level: &Level, trials: &[&Trial], out: &mut Vec<Check>) -> bool {
+        let group = self.groups.iter().find(|g| g.contains(&level.outlets[0])).unwrap();
+        let set = trials.iter().flat_map(|t| &t.open).any(|o| level.outlets.contains(&o.0));
+        if !set || !self.is_shared(group) || self.site().limits.undrawn.is_empty() {
+            return false;
+        }
+        let reached = |share: f64| {
+            let flow_m3s = level.sink.flow_m3s * share;
+            self.reached(&Sink { flow_m3s, ..level.sink })
+        };
+        out.extend(reached(1.0).iter());
+        let layers = |share: f64| reached(share).iter().map(|c| c.item).collect::<Vec<_>>();
+        layers(1.0 - ROUND_OFF) != layers(1.0 + ROUND_OFF)
+    }
+
+    /// What a mix gives, and the limits of the whole that it breaks.
+    fn whole(&self, blocks: &[Vec<Level>], trials: &[&Trial]) -> (Water, Vec<Check>) {
+        let Question { site, profile, now, before, .. } = *self.question;
+        let weights: Vec<f64> = self.question.blocks.iter().map(|b| b.0).collect();
+        let (mut temperatures, mut oxygens) = (Vec::new(), Vec::new());
+        let (mut cold_m3s, mut mean_m3s) = (0.0, 0.0);
+        let mut wholes: Vec<Whole> = Vec::new();
+        for (block, levels) in blocks.iter().enumerate() {
+            let streams = levels.iter().filter(|l| l.sink.flow_m3s > 0.0).map(|l| {
+                let Sink { centre_m, flow_m3s, opening } = l.sink;
+                (flow_m3s, self.curve(centre_m, opening).at(flow_m3s))
+            });
+            let streams: Vec<_> = streams.collect();
+            let flow_m3s: f64 = streams.iter().map(|s| s.0).sum();
+            let mean = |of: &dyn Fn(&gatemix::rank::Water) -> f64| {
+                streams.iter().map(|(q, w)| q * of(w)).sum::<f64>() / flow_m3s
+            };
+            let known = streams.iter().all(|(_, w)| w.oxygen_mg_l.is_some());
+            temperatures.push(mean(&|w| w.temperature_c));
+            oxygens.push(known.then(|| mean(&|w| w.oxygen_mg_l.unwrap_or(0.0))));
+            cold_m3s += weights[block] * flow_m3s * mean(&|w| w.cold_share);
+            mean_m3s += weights[block] * flow_m3s;
+            let through = |outlets: &[usize]| {
+                let named =
+                    trials.iter().flat_map(|t| &t.flows).filter(|f| f.1 > 0.0 && outlets.contains(&f.0));
+                named.map(|f| f.2[block]).sum()
+            };
+            wholes.push(Whole {
+                flow_m3s,
+                solids_mg_l: Some(mean(&gatemix::rank::Water::solids_mg_l)),
+                share_flows_m3s: site.limits.shares.iter().map(|s| through(&s.outlets)).collect(),
+                ..Whole::default()
+            });
+        }
+        let over_time = |of: &[f64]| of.iter().zip(&weights).map(|(v, w)| v * w).sum::<f64>();
+        let temperature_c = over_time(&temperatures);
+        let known: Option<Vec<f64>> = oxygens.into_iter().collect();
+        let parts: Vec<&Part> = self.parts.iter().collect();
+        let moves =
+            now.map(|now| limits::moves(site, now, &self.over_the_day(trials, &parts), &mut Vec::new()));
+        let mut checks = Vec::new();
+        for whole in wholes {
+            let before = now_or_not(before);
+            let whole = Whole { temperature_c, moves, before, ..whole };
+            limits::whole(site, profile.pool_m, &whole, &mut checks);
+        }
+        // the release as a whole was asked for, not found
+        checks.retain(|c| c.broken() && !OF_THE_RELEASE.contains(&c.rule));
+        let day = Day {
+            temperatures: &temperatures,
+            mean_c: temperature_c,
+            oxygens: known.as_deref(),
+            mean_mg_l: known.as_deref().map(over_time),
+            cold_share: cold_m3s / mean_m3s,
+            cost: moves.map_or(0.0, |m| m.cost),
+            hours: moves.map_or(0.0, |m| m.crew_hours),
+        };
+        (day.water(self.question), worst(checks))
+    }
+
+    /// Limits that the release asked for breaks, whatever the mix.
+    pub(super) fn hopeless(&self) -> Vec<Check> {
+        let Question { site, profile, blocks, before, .. } = *self.question;
+        let mut checks = Vec::new();
+        let mut judge = |flow_m3s: f64, of_a_day: bool| {
+            let release = Whole { flow_m3s, before: Some(before), ..Whole::default() };
+            let mut all = Vec::new();
+            limits::whole(site, profile.pool_m, &release, &mut all);
+            let mine = |c: &Check| OF_THE_RELEASE.contains(&c.rule) && (c.rule == Rule::Drawdown) == of_a_day;
+            checks.extend(all.into_iter().filter(|c| c.broken() && mine(c)));
+        };
+        blocks.iter().for_each(|b| judge(b.1, false));
+        judge(blocks.iter().map(|b| b.0 * b.1).sum(), true);
+        worst(checks)
+    }
+}
+
+const OF_THE_RELEASE: [Rule; 5] =
+    [Rule::ReleaseMin, Rule::ReleaseMax, Rule::FlowChangePerHour, Rule::FlowChangePerDay, Rule::Drawdown];
+
+fn now_or_not(before: Before) -> Option<Before> {
+    Some(Before { flow_m3s: None, ..before })
+}
+
+/// A day's water and what the change to it takes.
+struct Day<'a> {
+    temperatures: &'a [f64],
+    mean_c: f64,
+    oxygens: Option<&'a [f64]>,
+    mean_mg_l: Option<f64>,
+    cold_share: f64,
+    cost: f64,
+    hours: f64,
+}
+
+impl Day<'_> {
+    /// Its place in the order, by the rules valid at the dam.
+    fn water(&self, question: &Question) -> Water {
+        let bins = question.site.bins;
+        let (mut outside, mut short, mut distance_c) = (0.0_f64, 0.0_f64, 0.0_f64);
+        let mut has_floor = false;
+        let least = |of: &[f64]| of.iter().copied().fold(f64::INFINITY, f64::min);
+        let most = |of: &[f64]| of.iter().copied().fold(f64::NEG_INFINITY, f64::max);
+        let valid = |t: &&gatemix::target::Target| t.span.contains(question.date) && t.point == "dam";
+        for rule in question.site.targets.iter().filter(valid) {
+            let values = match rule.statistic {
+                Statistic::DailyMean => vec![self.mean_c],
+                Statistic::DailyMax | Statistic::SevenDayMeanOfMaxima => vec![most(self.temperatures)],
+                Statistic::DailyMin => vec![least(self.temperatures)],
+                Statistic::Instantaneous => vec![most(self.temperatures), least(self.temperatures)],
+            };
+            for value in values {
+                let over = |bound: Option<f64>| bound.map_or(0.0, |b| value - b);
+                let under = |bound: Option<f64>| bound.map_or(0.0, |b| b - value);
+                let (low, high) = (rule.low_kept_c(), rule.high_kept_c());
+                outside = outside.max(over(high)).max(under(low));
+                let (down, up) = (rule.preferred_c.or(low), rule.preferred_c.or(high));
+                distance_c = distance_c.max(over(up)).max(under(down));
+            }
+            let oxygen = match rule.statistic {
+                Statistic::DailyMean => self.mean_mg_l,
+                _ => self.oxygens.map(least),
+            };
+            has_floor |= rule.oxygen_min_mg_l.is_some();
+            short = short.max(rule.oxygen_min_mg_l.zip(oxygen).map_or(0.0, |(floor, o)| floor - o));
+        }
+        let mut at_edge = false;
+        let mut floor = |value: f64| {
+            at_edge |= value.abs() > EDGE && (value + ROUND_OFF - (value + ROUND_OFF).round()).abs() < EDGE;
+            (value + ROUND_OFF).floor()
+        };
+        let mut steps = |criterion: Criterion| -> Vec<(f64, f64)> {
+            match criterion {
+                Criterion::Oxygen if self.oxygens.is_none() => vec![(f64::from(u8::from(has_floor)), 256.0)],
+                Criterion::Oxygen if short <= ROUND_OFF => vec![(0.0, 256.0)],
+                // a part of a bin counts as a whole one, after all that keep the floor and all not known
+                Criterion::Oxygen => vec![(1.0 - floor(-short / bins.oxygen_mg_l), 256.0)],
+                Criterion::Range if outside <= ROUND_OFF => vec![(0.0, 256.0)],
+                Criterion::Range => vec![(-floor(-outside / bins.temperature_c), 256.0)],
+                Criterion::Preferred => vec![(floor(distance_c / bins.temperature_c), 256.0)],
+                Criterion::ColdWater => vec![(floor(self.cold_share / bins.cold_share), 128.0)],
+                Criterion::Moves => {
+                    vec![((self.cost / 0.1).round(), 1024.0), ((self.hours / 0.25).round(), 1024.0)]
+                }
+            }
+        };
+        let mut key = 0.0;
+        for (value, places) in question.order.iter().flat_map(|c| steps(*c)) {
+            key = key * places + value.min(places - 1.0);
+        }
+        Water { temperature_c: self.mean_c, oxygen_mg_l: self.mean_mg_l, distance_c, key, at_edge }
+    }
+}
