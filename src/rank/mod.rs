@@ -12,6 +12,7 @@ mod ranking;
 mod search;
 mod seats;
 mod tail;
+mod tries;
 mod units;
 
 use chrono::NaiveDate;
@@ -29,10 +30,11 @@ use arrange::ways;
 use choices::{Lanes, Levels, MOST_BLOCKS, Slot};
 use found::Found;
 use goal::{Efforts, Goal};
-use offers::{Kitchen, Offers};
+use offers::Offers;
 use ranking::Decoder;
 use search::{Task, WholeRule};
 use seats::Level;
+use tries::Kitchen;
 use units::Unit;
 
 pub use curve::{Curve, Curves, Water};
@@ -89,7 +91,7 @@ pub fn rank(question: &Question, progress: Progress) -> Result<Ranking, Stopped>
     let mut curves = Curves::default();
     let seats =
         seats::levels(site, &groups, &units, profile.pool_m, &mut curves).map_err(Stopped::Refused)?;
-    let alone = offers::alone(site, &units, &mut curves);
+    let alone = tries::alone(site, &units, &mut curves);
     let flows_m3s = shared_out(question, &units).map_err(Stopped::Refused)?;
     // leaks leave the dam beside the release
     let direct = site.outlets.iter().filter(|o| o.well.is_none());
@@ -356,7 +358,9 @@ fn hopeless(question: &Question) -> Vec<Check> {
         out.extend(checks.into_iter().filter(|c| c.broken() && (c.rule == Rule::Drawdown) == of_a_day));
     };
     against(mean, true);
-    blocks.iter().for_each(|b| against(b.1, false));
+    for block in blocks {
+        against(block.1, false);
+    }
     out.sort_by(|a, b| a.rule.cmp(&b.rule).then(a.room.total_cmp(&b.room)));
     out.dedup_by_key(|c| c.rule);
     out
