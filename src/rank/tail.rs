@@ -1,4 +1,6 @@
 //! The parts that stand alone, taken together: rows by the share they take, in blocks judged side by side.
+//!
+//! Methods: `docs/methods.md`, section 10.
 
 use super::choices::{Choice, Choices, Lanes, Levels};
 use super::goal::Days;

@@ -56,9 +56,13 @@ impl Kitchen<'_> {
 
     /// Time means of temperature (C) and oxygen (mg/L) of a ranked mix, computed in full.
     pub(super) fn release(&self, mix: &Ranked) -> Option<(f64, Option<f64>)> {
-        let shares = self.shares(mix.asked.len());
-        let parts: Vec<(f64, f64, Option<f64>)> = mix
-            .asked
+        self.water_over_day(&mix.asked)
+    }
+
+    /// The same of what is asked in each part of the day.
+    fn water_over_day(&self, asked: &[Asked]) -> Option<(f64, Option<f64>)> {
+        let shares = self.shares(asked.len());
+        let parts: Vec<(f64, f64, Option<f64>)> = asked
             .iter()
             .zip(&shares)
             .map(|(asked, share)| {
@@ -90,7 +94,7 @@ impl Kitchen<'_> {
         let settings = mix.asked.iter().map(|asked| self.resolved(asked));
         let mut shown =
             self.shown(self.shares(mix.asked.len()).into_iter().zip(settings).collect(), alike)?;
-        shown.unsure = self.unsure(mix.asked.first()?);
+        shown.unsure = self.unsure(&mix.asked);
         Some(shown)
     }
 
@@ -174,32 +178,37 @@ impl Kitchen<'_> {
 
     /// What comes out if gates not confirmed in position stand otherwise: shut instead of open, or fully open instead
     /// of shut. Of an outlet on no well that is taken as shut nothing is told, since nobody knows its flow.
-    fn unsure(&self, asked: &Asked) -> Vec<Unsure> {
-        let site = self.context.site();
-        let uncertain = site.outlets.iter().enumerate().filter(|(_, o)| o.uncertain);
+    fn unsure(&self, asked: &[Asked]) -> Vec<Unsure> {
+        let outlets = self.context.site().outlets.iter().enumerate();
+        let uncertain = outlets.filter(|(_, o)| o.uncertain);
         uncertain
-            .filter_map(|(outlet, o)| {
-                let mut other = asked.clone();
-                let direct = other.direct.iter().any(|g| g.outlet == outlet);
-                let on_well = other.open.iter().any(|g| g.0 == outlet);
-                let carries = o.well.is_some_and(|w| other.totals.iter().any(|t| t.0 == w));
-                if direct || on_well {
-                    other.direct.retain(|g| g.outlet != outlet);
-                    other.open.retain(|g| g.0 != outlet);
-                    if let Some(well) = o.well
-                        && !other.open.iter().any(|g| site.outlets[g.0].well == Some(well))
-                    {
-                        other.totals.retain(|t| t.0 != well);
-                    }
-                } else if carries {
-                    other.open.push((outlet, 1.0));
-                } else {
-                    return None;
-                }
-                let otherwise = self.water(&self.resolved(&other));
-                Some(Unsure { outlet, open: direct || on_well, otherwise })
+            .filter_map(|(outlet, _)| {
+                let is_open = |a: &Asked| {
+                    a.direct.iter().any(|g| g.outlet == outlet) || a.open.iter().any(|g| g.0 == outlet)
+                };
+                let open = asked.iter().any(is_open);
+                let others: Option<Vec<Asked>> = asked.iter().map(|a| self.other(a, outlet, open)).collect();
+                Some(Unsure { outlet, open, otherwise: self.water_over_day(&others?) })
             })
             .collect()
+    }
+
+    /// What is asked with a gate shut instead of open, or open instead of shut.
+    fn other(&self, asked: &Asked, outlet: usize, open: bool) -> Option<Asked> {
+        let site = self.context.site();
+        let well = site.outlets[outlet].well;
+        let mut other = asked.clone();
+        if open {
+            other.direct.retain(|g| g.outlet != outlet);
+            other.open.retain(|g| g.0 != outlet);
+            let still = |w: usize| other.open.iter().any(|g| site.outlets[g.0].well == Some(w));
+            let emptied = well.filter(|&w| !still(w));
+            other.totals.retain(|t| Some(t.0) != emptied);
+        } else {
+            well.filter(|&w| other.totals.iter().any(|t| t.0 == w))?;
+            other.open.push((outlet, 1.0));
+        }
+        Some(other)
     }
 }
 

@@ -23,7 +23,9 @@ pub(super) fn best(context: &Context, best: &Shown) -> String {
         let lead = if best.parts.len() > 1 { block_name(context, at) + ": " } else { String::new() };
         set.push(lead + &instruction(context, part));
     }
-    set.extend(best.change.as_ref().map(|change| moves(context, change)));
+    // that no gate moves is among the reasons
+    let change = best.change.as_ref().filter(|c| !c.moved.is_empty());
+    set.extend(change.map(|change| moves(context, change)));
     let mut why: Vec<String> = best.reasons.iter().map(|r| harmless(&in_system(r, system))).collect();
     if let Some(lost) = best.generation_lost_mw.filter(|mw| *mw > 0.0) {
         why.push(format!("{lost:.1} MW not made"));
@@ -49,7 +51,7 @@ pub(super) fn answers(context: &Context, answer: &RankAnswer) -> String {
     if let Some([coldest, warmest]) = answer.attainable_c {
         let unit = context.system.unit(Dimension::Temperature);
         let warmest = temperature(warmest, context.system);
-        let mut words = format!("every allowed mix gives {} to {warmest}", figure(coldest, unit, 1));
+        let mut words = format!("allowed mixes give {} to {warmest}", figure(coldest, unit, 1));
         match answer.attainable_oxygen_mg_l {
             Some([least, most]) => _ = write!(words, " and {least:.1} to {most:.1} mg/L oxygen"),
             None => words.push_str(", oxygen unknown"),
@@ -110,7 +112,7 @@ fn split(context: &Context, answer: &RankAnswer, split: &PreferredSplit) -> Stri
         let unit = system.unit(Dimension::Temperature);
         let [coldest, warmest] = split.bracket_c;
         let (coldest, warmest) = (figure(coldest, unit, 1), temperature(warmest, system));
-        return format!("none of {a} and {b} gives {preferred}: {coldest} to {warmest}, {rest}");
+        return format!("no split of {a} and {b} gives {preferred}: {coldest} to {warmest}, {rest}");
     }
     format!("{preferred} with {}, {rest}", roots.join(", or "))
 }
@@ -119,7 +121,8 @@ fn least(context: &Context, least: &Least) -> String {
     let system = context.system;
     if let Some(found) = least.flow_m3s {
         let gates = named(context, &[&least.gates]).join(", ");
-        format!("{} in all keeps every target: {gates}", flow(found, system))
+        let end = if found > least.tried_m3s[0] { "in all" } else { "in all, the least tried," };
+        format!("{} {end} keeps every target: {gates}", flow(found, system))
     } else {
         let [low, high] = least.tried_m3s.map(|f| flow(f, system));
         format!("no release tried, from {low} to {high}, keeps every target")
@@ -137,7 +140,7 @@ fn pocket(context: &Context, pocket: Pocket) -> String {
         "each {} more in proportion: {words} {} {way} ({}-{})",
         flow(more_m3s, system),
         warmth.symbol(),
-        figure(pocket.from_m3s, release, 0),
+        figure(pocket.from_m3s, release, u8::from(system != System::Us)),
         flow(pocket.to_m3s, system)
     )
 }

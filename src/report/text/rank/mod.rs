@@ -140,8 +140,8 @@ fn nearly(context: &Context, nearest: &Shown) -> String {
 fn examined(answer: &RankAnswer, system: System) -> String {
     let r = &answer.ranking;
     let mut words = format!(
-        "{} mixes: {} judged, {} skipped with proof; {} allowed",
-        grouped(r.examined),
+        "{}: {} judged, {} skipped with proof; {} allowed",
+        if r.examined == 1 { "1 mix".to_owned() } else { grouped(r.examined) + " mixes" },
         grouped(r.judged),
         grouped(r.skipped),
         grouped(r.allowed)
