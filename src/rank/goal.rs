@@ -220,14 +220,14 @@ impl Goal {
             let missed = if range[i] > ROUND_OFF { 1.0 } else { 0.0 };
             key[i] += w_range * (missed + up_to(whole(range[i] * self.per_c - ROUND_OFF), STEPS - 2.0));
         }
-        for i in 0..N {
-            key[i] += w_far * up_to(whole(distances_c[i] * self.per_c + ROUND_OFF), STEPS - 1.0);
+        for (key, far) in key.iter_mut().zip(distances_c) {
+            *key += w_far * up_to(whole(far * self.per_c + ROUND_OFF), STEPS - 1.0);
         }
-        for i in 0..N {
-            key[i] += w_cold * up_to(whole(days.cold_share[i] * self.per_share + ROUND_OFF), COLD_STEPS - 1.0);
+        for (key, cold) in key.iter_mut().zip(&days.cold_share) {
+            *key += w_cold * up_to(whole(cold * self.per_share + ROUND_OFF), COLD_STEPS - 1.0);
         }
-        for i in 0..N {
-            key[i] += w_moves * up_to(days.effort[i], MOVE_STEPS * MOVE_STEPS - 1.0);
+        for (key, effort) in key.iter_mut().zip(&days.effort) {
+            *key += w_moves * up_to(*effort, MOVE_STEPS * MOVE_STEPS - 1.0);
         }
         key
     }
