@@ -121,13 +121,7 @@ pub(super) struct Days<const N: usize> {
 impl<const N: usize> Default for Days<N> {
     fn default() -> Self {
         let none = [0.0; N];
-        Self {
-            low_c: [none; 3],
-            high_c: [none; 3],
-            oxygen_mg_l: [none; 2],
-            cold_share: none,
-            effort: none,
-        }
+        Self { low_c: [none; 3], high_c: [none; 3], oxygen_mg_l: [none; 2], cold_share: none, effort: none }
     }
 }
 
@@ -224,7 +218,8 @@ impl Goal {
             key[i] += w_far * up_to(whole(distances_c[i] * self.per_c + ROUND_OFF), STEPS - 1.0);
         }
         for i in 0..N {
-            key[i] += w_cold * up_to(whole(days.cold_share[i] * self.per_share + ROUND_OFF), COLD_STEPS - 1.0);
+            key[i] +=
+                w_cold * up_to(whole(days.cold_share[i] * self.per_share + ROUND_OFF), COLD_STEPS - 1.0);
         }
         for i in 0..N {
             key[i] += w_moves * up_to(days.effort[i], MOVE_STEPS * MOVE_STEPS - 1.0);

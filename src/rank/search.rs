@@ -173,7 +173,14 @@ impl<'a> Walk<'a> {
     }
 
     /// Goes through the choices of the head from `depth` on, `left` steps of the release still to be given.
-    fn deeper(&self, depth: usize, left: usize, stack: &mut [Sums<'a>], days: &mut Days<ROWS>, found: &mut Found) {
+    fn deeper(
+        &self,
+        depth: usize,
+        left: usize,
+        stack: &mut [Sums<'a>],
+        days: &mut Days<ROWS>,
+        found: &mut Found,
+    ) {
         if self.completions[depth][left] == 0 {
             return;
         }

@@ -235,10 +235,8 @@ impl Answers<'_> {
             }
         }
         let temperatures = || places.iter().map(|p| p.1.0);
-        let bracket_c = [
-            temperatures().fold(f64::INFINITY, f64::min),
-            temperatures().fold(f64::NEG_INFINITY, f64::max),
-        ];
+        let bracket_c =
+            [temperatures().fold(f64::INFINITY, f64::min), temperatures().fold(f64::NEG_INFINITY, f64::max)];
         Some(PreferredSplit { mix: mix.clone(), between, preferred_c, roots, bracket_c })
     }
 
@@ -296,9 +294,8 @@ impl Answers<'_> {
         let at = |times: f64| self.kitchen.water(&self.kitchen.resolved(&scaled(asked, times))).map(|w| w.0);
         let here = at(1.0)?;
         let slope = (at(1.0 + POCKET_STEP)? - at(1.0 - POCKET_STEP)?) / (2.0 * POCKET_STEP);
-        let near = |times: f64| {
-            at(times).is_some_and(|t| (t - here - slope * (times - 1.0)).abs() <= POCKET_NEAR_C)
-        };
+        let near =
+            |times: f64| at(times).is_some_and(|t| (t - here - slope * (times - 1.0)).abs() <= POCKET_NEAR_C);
         let [low, high] = POCKET_RANGE;
         let step = (high - low) / f64::from(POCKET_PLACES);
         let reach = |way: f64, end: f64| {
@@ -308,11 +305,7 @@ impl Answers<'_> {
             }
             times * release_m3s
         };
-        Some(Pocket {
-            c_per_m3s: slope / release_m3s,
-            from_m3s: reach(-1.0, low),
-            to_m3s: reach(1.0, high),
-        })
+        Some(Pocket { c_per_m3s: slope / release_m3s, from_m3s: reach(-1.0, low), to_m3s: reach(1.0, high) })
     }
 }
 

@@ -92,7 +92,10 @@ pub(super) fn plan(context: &Context, asked: &RankAsked) -> Result<Plan, Failure
         .min_by(|a, b| (1.0 / *a as f64 - step).abs().total_cmp(&(1.0 / *b as f64 - step).abs()))
         .unwrap_or(20);
     if (1.0 / steps as f64 - step).abs() > 1e-9 {
-        let words = format!("--step: {:.2} % is taken, of which there are {steps} in the release", 100.0 / steps as f64);
+        let words = format!(
+            "--step: {:.2} % is taken, of which there are {steps} in the release",
+            100.0 / steps as f64
+        );
         notes.push(Problem::note("step", words));
     }
     let without = asked
@@ -125,8 +128,7 @@ fn order(typed: Option<&str>) -> Result<Vec<Criterion>, Failure> {
         }
         out.push(*criterion);
     }
-    let rest: Vec<Criterion> =
-        Criterion::NAMES.iter().map(|n| n.1).filter(|c| !out.contains(c)).collect();
+    let rest: Vec<Criterion> = Criterion::NAMES.iter().map(|n| n.1).filter(|c| !out.contains(c)).collect();
     out.extend(rest);
     Ok(out)
 }

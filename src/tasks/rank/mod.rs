@@ -95,7 +95,14 @@ pub fn rank(
     let perturbed = Perturbed::new(site, &context.profile, context.age_days);
     let groups = groups(site);
     let date = context.on.date_naive();
-    let mut kitchen = Kitchen { context, perturbed: &perturbed, groups: &groups, date, now: now.as_ref(), before: Before::default() };
+    let mut kitchen = Kitchen {
+        context,
+        perturbed: &perturbed,
+        groups: &groups,
+        date,
+        now: now.as_ref(),
+        before: Before::default(),
+    };
     let now_shown = now.as_ref().and_then(|setting| kitchen.now(setting));
     if let Some(shown) = &now_shown {
         kitchen.before = Before {
@@ -157,6 +164,8 @@ fn no_now(failure: Failure) -> Problem {
     };
     Problem::note(
         "now-unknown",
-        format!("the setting now is not known ({why}): moves are not counted and rates of change not checked"),
+        format!(
+            "the setting now is not known ({why}): moves are not counted and rates of change not checked"
+        ),
     )
 }

@@ -63,12 +63,8 @@ fn warmth(rule: &Target, standing: &TargetStanding) -> Option<String> {
     let by = standing.temperature.1.unwrap_or(0.0);
     match standing.temperature.0 {
         Standing::Unknown => None,
-        Standing::Below => {
-            Some(format!("{name}: {} is {} too cold", say::c(value, 1), say::dc(by, 1)))
-        }
-        Standing::Above => {
-            Some(format!("{name}: {} is {} too warm", say::c(value, 1), say::dc(by, 1)))
-        }
+        Standing::Below => Some(format!("{name}: {} is {} too cold", say::c(value, 1), say::dc(by, 1))),
+        Standing::Above => Some(format!("{name}: {} is {} too warm", say::c(value, 1), say::dc(by, 1))),
         Standing::Inside => Some(match rule.preferred_c {
             Some(preferred) => format!(
                 "{name}: {} is inside its range, {} from the preferred {}",

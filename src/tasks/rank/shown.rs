@@ -169,7 +169,8 @@ impl Kitchen<'_> {
         let by_flow_c = over(&|p| Some(p.mix.release.flow_m3s * p.mix.release.temperature_c))? / flow_m3s;
         let cold_c = site.cold_water_c.first().copied();
         let cold = |p: &ShownPart, threshold: f64| -> f64 {
-            let share = |d: &crate::mix::Drawn| d.zone.map_or(0.0, |z| z.colder_share(&profile.column, threshold));
+            let share =
+                |d: &crate::mix::Drawn| d.zone.map_or(0.0, |z| z.colder_share(&profile.column, threshold));
             p.mix.levels.iter().map(|d| d.level.sink.flow_m3s * share(d)).sum()
         };
         let lost: Vec<(usize, f64)> = site
@@ -218,7 +219,11 @@ impl Kitchen<'_> {
     }
 
     /// The day so many days after the decision, a part of one counted as one.
-    #[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "a whole number of days, capped")]
+    #[expect(
+        clippy::cast_possible_truncation,
+        clippy::cast_sign_loss,
+        reason = "a whole number of days, capped"
+    )]
     fn after(&self, days: f64) -> Option<NaiveDate> {
         self.date.checked_add_days(Days::new(days.ceil().clamp(0.0, 36_500.0) as u64))
     }
@@ -232,8 +237,13 @@ impl Kitchen<'_> {
         (0..site.outlets.len())
             .filter_map(|outlet| {
                 let ((from, from_m3s), (to, to_m3s)) = (at(now, outlet), at(to, outlet));
-                limits::is_moved(&site.outlets[outlet], (from, from_m3s), (to, to_m3s))
-                    .then_some(Move { outlet, from, to, from_m3s, to_m3s })
+                limits::is_moved(&site.outlets[outlet], (from, from_m3s), (to, to_m3s)).then_some(Move {
+                    outlet,
+                    from,
+                    to,
+                    from_m3s,
+                    to_m3s,
+                })
             })
             .collect()
     }

@@ -34,7 +34,7 @@ pub(super) struct Sum {
 }
 
 /// Number of mixes there are.
-fn count(works: &Works, steps: usize) -> usize {
+pub(super) fn count(works: &Works, steps: usize) -> usize {
     let mut ways = vec![0_usize; steps + 1];
     ways[0] = 1;
     for part in &works.parts {
