@@ -13,7 +13,7 @@ use super::band::{Perturbed, Spread};
 use super::beware;
 use super::blend::{Blend, Drawn, draw_levels, release};
 use super::levels::{Gate, Setting, groups, levels};
-use super::limits::{self, Check, Of, Whole};
+use super::limits::{self, Check, Of, Rule, Whole};
 use super::standing::{TargetStanding, standings};
 
 /// Flow over an ungated crest set by hand may differ from its rating by this share (choice).
@@ -200,6 +200,12 @@ fn broken<'a>(site: &'a Site, checks: &'a [Check]) -> impl Iterator<Item = Probl
 }
 
 impl Mix {
+    /// Takes the checks of a rule out, for a caller who knows better than the setting alone, with their warnings.
+    pub fn drop_limits(&mut self, site: &Site, rule: Rule) {
+        let dropped: Vec<Check> = self.limits.extract_if(.., |c| c.rule == rule).collect();
+        self.warnings.retain(|w| !broken(site, &dropped).any(|b| b == *w));
+    }
+
     /// Adds limits judged by a caller who knows more than the setting: the setting now, the head of a well. Warnings
     /// and what is not checked follow.
     pub fn add_limits(&mut self, site: &Site, column: &Column, setting: &Setting, checks: Vec<Check>) {

@@ -1,4 +1,6 @@
 //! Which parts of the dam are taken one inside the other, and which are taken together beforehand.
+//!
+//! Methods: `docs/methods.md`, section 10.
 
 use super::choices::{Choice, Choices, Levels, settled, together};
 

@@ -1,4 +1,6 @@
 //! What one part of the dam can do at each share of the release, and two parts taken together.
+//!
+//! Methods: `docs/methods.md`, section 10.
 
 use super::curve::Curves;
 

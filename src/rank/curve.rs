@@ -114,7 +114,7 @@ impl Curve {
                 while at + 2 < knots.len() && knots[at + 1].root * steps_per_root <= step as f64 {
                     at += 1;
                 }
-                at as u32
+                u32::try_from(at).unwrap_or(u32::MAX)
             })
             .collect();
         Some(Self { knots, starts, steps_per_root })
@@ -138,6 +138,7 @@ impl Curve {
 
     /// The two knots about a flow and the share of the way between them.
     #[inline]
+    #[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "no less than zero, and capped")]
     fn place(&self, flow_m3s: f64) -> (&Knot, &Knot, f64) {
         let root = flow_m3s.max(0.0).sqrt();
         let step = ((root * self.steps_per_root) as usize).min(self.starts.len() - 1);
@@ -182,7 +183,7 @@ fn refine(solve: &impl Fn(f64) -> Option<Knot>, a: Knot, b: Knot, halvings: u32,
 #[derive(Debug, Default)]
 pub struct Curves {
     places: BTreeMap<[u64; 3], usize>,
-    curves: Vec<Option<Curve>>,
+    solved: Vec<Option<Curve>>,
     sinks: Vec<(f64, Opening)>,
 }
 
@@ -204,7 +205,7 @@ impl Curves {
     /// Solves what was asked for, on all cores.
     pub fn solve(&mut self, column: &Column, most_m3s: f64, cold_c: Option<f64>) {
         use rayon::prelude::*;
-        self.curves = self
+        self.solved = self
             .sinks
             .par_iter()
             .map(|&(centre_m, opening)| Curve::new(column, centre_m, opening, most_m3s, cold_c))
@@ -214,7 +215,7 @@ impl Curves {
     /// A solved curve; `None` for a sink out of the water.
     #[inline]
     pub fn get(&self, index: usize) -> Option<&Curve> {
-        self.curves.get(index)?.as_ref()
+        self.solved.get(index)?.as_ref()
     }
 
     /// Where a curve draws.

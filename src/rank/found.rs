@@ -1,4 +1,6 @@
 //! What a search found.
+//!
+//! Methods: `docs/methods.md`, section 10.
 
 use super::goal::whole;
 

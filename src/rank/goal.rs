@@ -172,12 +172,13 @@ impl Goal {
         }
     }
 
-    /// Least distance from the preferred temperature, C; where no rule prefers one, from the range. `statistics` is 1
-    /// for steady days, else 3.
+    /// Least distance from the preferred temperature, C; where no rule prefers one, from the range. `S` statistics
+    /// count: 1 for steady days, else 3.
     #[inline]
-    pub(super) fn distances_c<const N: usize>(&self, days: &Days<N>, statistics: usize) -> [f64; N] {
+    pub(super) fn distances_c<const N: usize, const S: usize>(&self, days: &Days<N>) -> [f64; N] {
         let mut out = [0.0; N];
-        for (w, (low, high)) in self.wanted.iter().zip(days.low_c.iter().zip(&days.high_c)).take(statistics) {
+        for s in 0..S {
+            let (w, low, high) = (&self.wanted[s], &days.low_c[s], &days.high_c[s]);
             for i in 0..N {
                 out[i] = most(most(out[i], low[i] - w.preferred.0), w.preferred.1 - high[i]);
             }
@@ -188,15 +189,14 @@ impl Goal {
     /// The keys by which mixes are ordered, whole numbers: the smaller the better; of several mixes none has a smaller
     /// one. Every line goes over all days, so that they are computed side by side.
     #[inline]
-    pub(super) fn keys<const N: usize>(
+    pub(super) fn keys<const N: usize, const S: usize>(
         &self,
         days: &Days<N>,
-        statistics: usize,
         distances_c: &[f64; N],
     ) -> [f64; N] {
         let (mut range, mut short) = ([0.0; N], [0.0; N]);
-        for (s, w) in self.wanted.iter().enumerate().take(statistics) {
-            let (low, high) = (&days.low_c[s], &days.high_c[s]);
+        for s in 0..S {
+            let (w, low, high) = (&self.wanted[s], &days.low_c[s], &days.high_c[s]);
             let oxygen = &days.oxygen_mg_l[usize::from(s > 0)];
             for i in 0..N {
                 range[i] = most(most(range[i], w.low - high[i]), low[i] - w.high);
@@ -228,24 +228,40 @@ impl Goal {
     }
 
     /// The keys of the same days with oxygen unknown: after oxygen known to keep the floor, before any that does not.
-    pub(super) fn keys_unknown<const N: usize>(
+    pub(super) fn keys_unknown<const N: usize, const S: usize>(
         &self,
         days: &Days<N>,
-        statistics: usize,
         distances_c: &[f64; N],
     ) -> [f64; N] {
         let told = Days { oxygen_mg_l: [[f64::INFINITY; N]; 2], ..days.clone() };
         let unknown = if self.has_floor { self.weights[0] } else { 0.0 };
-        self.keys(&told, statistics, distances_c).map(|key| key + unknown)
+        self.keys::<N, S>(&told, distances_c).map(|key| key + unknown)
     }
 }
 
-/// Effort of the moves of one unit: steps of their cost, then of their crew hours, in one whole number; efforts of
-/// several of `units` add up, and the hours of all of them never make a step of cost.
-pub(super) fn effort(cost: f64, crew_hours: f64, units: usize) -> f64 {
-    let steps = |value: f64, step: f64, most: f64| up_to(whole(value / step + 0.5), most);
-    let most_hours = (MOVE_STEPS / units as f64).floor() - 1.0;
-    steps(cost, COST_STEP, MOVE_STEPS - 1.0) * MOVE_STEPS + steps(crew_hours, HOUR_STEP, most_hours)
+/// Steps of cost and of crew hours by which efforts are told apart: a tenth and a quarter, or wider where all gates of
+/// the site together would come to more steps than a key holds.
+#[derive(Debug, Clone, Copy)]
+pub(super) struct Efforts {
+    cost: f64,
+    hours: f64,
+}
+
+impl Efforts {
+    pub(super) fn of(site: &Site) -> Self {
+        let outlets = site.outlets.len() as f64;
+        let step = |least: f64, all: f64| least.max(all / (MOVE_STEPS - 1.0 - outlets).max(1.0));
+        Self {
+            cost: step(COST_STEP, site.outlets.iter().map(|o| o.crew.cost).sum()),
+            hours: step(HOUR_STEP, site.outlets.iter().map(|o| o.crew.hours).sum()),
+        }
+    }
+
+    /// Effort of the moves of one unit: steps of their cost, then of their crew hours, in one whole number. Efforts of
+    /// several units add up.
+    pub(super) fn effort(self, cost: f64, crew_hours: f64) -> f64 {
+        whole(cost / self.cost + 0.5) * MOVE_STEPS + whole(crew_hours / self.hours + 0.5)
+    }
 }
 
 /// The larger of two numbers that are numbers.

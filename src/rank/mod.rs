@@ -12,6 +12,7 @@ mod ranking;
 mod search;
 mod seats;
 mod tail;
+mod tries;
 mod units;
 
 use chrono::NaiveDate;
@@ -27,11 +28,12 @@ use crate::withdrawal::{Opening, Sink, zone};
 use arrange::ways;
 use choices::{Lanes, Levels, MOST_BLOCKS, Slot};
 use found::Found;
-use goal::Goal;
-use offers::{Kitchen, Offers};
+use goal::{Efforts, Goal};
+use offers::Offers;
 use ranking::Decoder;
 use search::{Task, WholeRule};
 use seats::Level;
+use tries::Kitchen;
 
 pub use curve::{Curve, Curves, Water};
 pub use goal::Criterion;
@@ -87,7 +89,7 @@ pub fn rank(question: &Question, progress: Progress) -> Result<Ranking, Stopped>
     let mut curves = Curves::default();
     let seats =
         seats::levels(site, &groups, &units, profile.pool_m, &mut curves).map_err(Stopped::Refused)?;
-    let alone = offers::alone(site, &units, &mut curves);
+    let alone = tries::alone(site, &units, &mut curves);
     let spilt: f64 = units.iter().filter_map(|u| u.spills_m3s).sum();
     let mut flows_m3s = [0.0; MOST_BLOCKS];
     for (flow, block) in flows_m3s.iter_mut().zip(question.blocks) {
@@ -127,6 +129,7 @@ pub fn rank(question: &Question, progress: Progress) -> Result<Ranking, Stopped>
         levels: &levels,
         alone: &nearest,
         flows_m3s,
+        efforts: Efforts::of(site),
     };
     let offers = kitchen.offers();
     let (rules, told) = whole_rules(question, !slots.is_empty());
@@ -338,7 +341,9 @@ fn hopeless(question: &Question) -> Vec<Check> {
         out.extend(checks.into_iter().filter(|c| c.broken() && (c.rule == Rule::Drawdown) == of_a_day));
     };
     against(mean, true);
-    blocks.iter().for_each(|b| against(b.1, false));
+    for block in blocks {
+        against(block.1, false);
+    }
     out.sort_by(|a, b| a.rule.cmp(&b.rule).then(a.room.total_cmp(&b.room)));
     out.dedup_by_key(|c| c.rule);
     out

@@ -1,4 +1,6 @@
 //! The ranking: what was found, as mixes with names.
+//!
+//! Methods: `docs/methods.md`, section 10.
 
 use crate::mix::limits::{self, Check};
 use crate::mix::{Asked, Gate};

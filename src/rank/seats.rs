@@ -1,5 +1,7 @@
 //! The levels of a site under every opening of their outlets, so that a level is solved once however often it is
 //! met.
+//!
+//! Methods: `docs/methods.md`, section 10.
 
 use crate::intake;
 use crate::mix::seat;

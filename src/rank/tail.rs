@@ -1,4 +1,6 @@
 //! The parts that stand alone, taken together: rows by the share they take, in blocks judged side by side.
+//!
+//! Methods: `docs/methods.md`, section 10.
 
 use super::choices::{Choice, Choices, Lanes, Levels};
 use super::goal::Days;
@@ -123,11 +125,15 @@ impl Tail {
     }
 }
 
-/// Fills in the days of a block's rows, with what the head adds to each.
+/// Fills in temperature and oxygen of a block's rows, with what the head adds to each; gives the mean flow of each, of
+/// a steady day one over it.
 #[inline]
-pub(super) fn fill<const B: usize>(days: &mut Days<ROWS>, block: &Block, head: &[f64], levels: &Levels) {
-    let lanes = levels.lanes;
-    // mean of the flow; of a steady day one over it
+pub(super) fn waters<const B: usize>(
+    days: &mut Days<ROWS>,
+    block: &Block,
+    head: &[f64],
+    levels: &Levels,
+) -> Column {
     let mut flows = [0.0; ROWS];
     for b in 0..B {
         let [flow, heat, oxygen] = [3 * b, 3 * b + 1, 3 * b + 2].map(|lane| &block.lanes[lane]);
@@ -161,6 +167,14 @@ pub(super) fn fill<const B: usize>(days: &mut Days<ROWS>, block: &Block, head: &
     for statistic in 0..if B == 1 { 1 } else { 3 } {
         days.high_c[statistic] = days.low_c[statistic];
     }
+    flows
+}
+
+/// Fills in the days of a block's rows, with what the head adds to each.
+#[inline]
+pub(super) fn fill<const B: usize>(days: &mut Days<ROWS>, block: &Block, head: &[f64], levels: &Levels) {
+    let flows = waters::<B>(days, block, head, levels);
+    let lanes = levels.lanes;
     let [cold, effort] = [lanes.cold(), lanes.effort()].map(|lane| &block.lanes[lane]);
     let [head_cold, head_effort] = [lanes.cold(), lanes.effort()].map(|l| head[l]);
     for i in 0..ROWS {

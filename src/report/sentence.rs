@@ -1,6 +1,9 @@
 //! Sentences that every output shares.
 
 use crate::problem::{Problem, Weight};
+use crate::site::Site;
+use crate::tasks::rank::Unsure;
+use crate::units::say;
 
 /// How the figures were made.
 pub const METHOD: &str = "point-sink withdrawal (WES H-73-4, E-87-2), samples as measured, levelled density; 10-90 % of seeded perturbed cases";
@@ -16,4 +19,16 @@ pub fn flags_of(problems: &[Problem]) -> Vec<&Problem> {
     out.sort_by_key(|p| std::cmp::Reverse(p.weight));
     out.retain(|p| p.weight != Weight::Refused);
     out
+}
+
+/// What a gate whose position is not confirmed would change; quantities as [`say`] marks them.
+pub(super) fn unsure_words(site: &Site, unsure: &Unsure) -> String {
+    let name = &site.outlets[unsure.outlet].name;
+    let (taken, otherwise) = if unsure.open { ("open", "shut") } else { ("shut", "fully open") };
+    let gives = match unsure.otherwise {
+        None => "nothing flows".to_owned(),
+        Some((t, None)) => format!("{}, oxygen unknown", say::c(t, 1)),
+        Some((t, Some(oxygen))) => format!("{}, oxygen {oxygen:.1} mg/L", say::c(t, 1)),
+    };
+    format!("{name} is not confirmed {taken}; if it is {otherwise}: {gives}")
 }

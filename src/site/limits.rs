@@ -154,6 +154,17 @@ pub struct Limits {
     pub max_crew_hours: Option<f64>,
 }
 
+impl Limits {
+    /// First day from a date on which no outage holds an outlet; `None` where the last has no end.
+    pub fn in_use_from(&self, outlet: usize, date: NaiveDate) -> Option<NaiveDate> {
+        let mut day = date;
+        while let Some(outage) = self.outages.iter().find(|o| o.outlet == outlet && o.covers(day)) {
+            day = outage.to?.succ_opt()?;
+        }
+        Some(day)
+    }
+}
+
 /// Differences too small to order mixes by (defaults are choice).
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Bins {

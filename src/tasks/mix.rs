@@ -1,8 +1,10 @@
 //! What comes out of a setting.
 
-use crate::mix::{Mix, Perturbed, Setting, judge};
+use crate::mix::limits::Before;
+use crate::mix::{Blend, Mix, Perturbed, Setting, judge};
 use crate::problem::Problem;
 
+use super::change::{Change, change};
 use super::setting::{now_setting, setting};
 use super::words::Word;
 use super::{Context, Failure};
@@ -16,6 +18,8 @@ pub struct MixAnswer {
     pub mix: Mix,
     /// The setting now, judged the same way, where it is known and another.
     pub now: Option<(Setting, Mix)>,
+    /// What the change from it takes.
+    pub change: Option<Change>,
 }
 
 /// What comes out of the setting that words say; without any, of the setting now.
@@ -44,7 +48,15 @@ pub fn mix(context: &Context, words: &[Word]) -> Result<MixAnswer, Failure> {
     mix.warnings.extend(understood.notes);
     let (now, why_not) = judged_now(context, &perturbed, &understood.setting);
     mix.warnings.extend(why_not);
-    Ok(MixAnswer { setting: understood.setting, mix, now })
+    let change = now.as_ref().map(|(now, was)| {
+        let Blend { flow_m3s, temperature_c, .. } = was.release;
+        let before = Before { flow_m3s: Some(flow_m3s), temperature_c: Some(temperature_c) };
+        let mut checks = Vec::new();
+        let change = change(site, (now, before), &understood.setting, &[mix.release], date, &mut checks);
+        mix.add_limits(site, &context.profile.column, &understood.setting, checks);
+        change
+    });
+    Ok(MixAnswer { setting: understood.setting, mix, now, change })
 }
 
 /// The setting now judged beside another, or why it cannot be shown.

@@ -13,12 +13,14 @@ use crate::profile::Profile;
 use crate::site::Site;
 use crate::units::{Dimension, System};
 
+mod change;
 mod mix;
 mod pool;
 pub mod rank;
 mod setting;
 mod words;
 
+pub use change::{Change, Move};
 pub use mix::{MixAnswer, mix};
 pub use pool::{ColdWater, OutletState, PoolAnswer, pool};
 pub use setting::{Understood, now_setting, setting};

@@ -116,7 +116,14 @@ impl Said {
                 let small = system.unit(dimension).from_si(self.value_si).abs() < 10.0;
                 if small { 2 } else { 0 }
             }
-            (System::Us, _) => self.decimals.min(1),
+            // whoever asks for more than hundredths tells a hair's breadth
+            (System::Us, _) => {
+                if self.decimals > 2 {
+                    self.decimals
+                } else {
+                    self.decimals.min(1)
+                }
+            }
         }
     }
 }

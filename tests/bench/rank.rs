@@ -14,7 +14,7 @@ use gatemix::files::site::site;
 use gatemix::mix::limits::Before;
 use gatemix::mix::{Gate, Setting};
 use gatemix::profile::{self, Profile};
-use gatemix::rank::{Criterion, Question, rank};
+use gatemix::rank::{Criterion, Question, Ranking, rank};
 use gatemix::site::Site;
 
 /// A full ranking may take this long on two cores, s.
@@ -22,7 +22,14 @@ const SLOWEST_S: f64 = 0.5;
 const SAMPLES: usize = 200;
 const POOL_M: f64 = 72.0;
 const FLOW_M3S: f64 = 60.0;
+/// Steps of 2 %.
+const STEPS: usize = 50;
 const ROUNDS: usize = 9;
+/// Outlets beside the wells: any flow.
+const OTHERS: [&str; 2] = [
+    "{ name: Sluice, centre: 8, height: 3, width: 3 }",
+    "{ name: Crest, kind: crest, gated: true, centre: 69, width: 30 }",
+];
 
 /// A dam of two wells with `gates` gates each, `others` outlets beside them.
 fn dam(gates: usize, others: &[&str]) -> Option<Site> {
@@ -42,8 +49,7 @@ fn dam(gates: usize, others: &[&str]) -> Option<Site> {
     for line in others {
         text += &format!("  - {line}\n");
     }
-    text +=
-        "targets:\n  - { name: cold, low: 9, preferred: 12, high: 14, oxygen_min: 7 }\ncold_water: [10]\n";
+    text += "targets:\n  - { name: cold, low: 9, preferred: 12, high: 14, oxygen_min: 7 }\ncold_water: [10]\n";
     site(&text, "site.yaml").site
 }
 
@@ -69,28 +75,19 @@ fn water(site: &Site) -> Option<Profile> {
     Profile::build(&raw, site, None).0
 }
 
-fn main() -> ExitCode {
-    let others = [
-        "{ name: Sluice, centre: 8, height: 3, width: 3 }",
-        "{ name: Crest, kind: crest, gated: true, centre: 69, width: 30 }",
-    ];
-    let Some(site) = dam(5, &others) else { return ExitCode::FAILURE };
-    let Some(profile) = water(&site) else { return ExitCode::FAILURE };
-    let Some(date) = NaiveDate::from_ymd_opt(2025, 7, 14) else { return ExitCode::FAILURE };
+/// Ranks a dam of so many gates in each of its two wells, beside a sluice and a crest.
+fn ranked(gates: usize, steps: usize) -> Option<(Ranking, f64)> {
+    let site = dam(gates, &OTHERS)?;
+    let profile = water(&site)?;
     let now = Setting::of(vec![
-        Gate { outlet: 1, opening: 1.0, flow_m3s: 30.0 },
-        Gate { outlet: 6, opening: 1.0, flow_m3s: 30.0 },
+        Gate { outlet: 0, opening: 1.0, flow_m3s: 0.5 * FLOW_M3S },
+        Gate { outlet: gates, opening: 1.0, flow_m3s: 0.5 * FLOW_M3S },
     ]);
-    // `once STEPS` ranks once, for an instruction count
-    let mut arguments = std::env::args().skip_while(|a| a != "once").skip(1);
-    let once = arguments.next().and_then(|a| a.parse::<usize>().ok());
-    let steps = once.unwrap_or(50);
-    let rounds = if once.is_some() { 1 } else { ROUNDS };
     let order = Criterion::NAMES.map(|c| c.1);
     let question = Question {
         site: &site,
         profile: &profile,
-        date,
+        date: NaiveDate::from_ymd_opt(2025, 7, 14)?,
         blocks: &[(1.0, FLOW_M3S)],
         now: Some(&now),
         before: Before::default(),
@@ -98,30 +95,47 @@ fn main() -> ExitCode {
         order: &order,
         without: &[],
     };
-    let mut best = f64::INFINITY;
-    let mut times = Vec::new();
-    for _ in 0..rounds {
-        let start = Instant::now();
-        let Ok(ranking) = rank(&question, &|_| ControlFlow::Continue(())) else { return ExitCode::FAILURE };
-        let took = start.elapsed().as_secs_f64();
-        times.push(took);
-        best = best.min(took);
-        if times.len() == rounds {
-            println!(
-                "{} mixes examined, {} judged, {} skipped, {} allowed, {} sets of outlets, {} limits",
-                ranking.examined,
-                ranking.judged,
-                ranking.skipped,
-                ranking.allowed,
-                ranking.mixes.len(),
-                ranking.rejected.len()
-            );
-            for idea in ranking.ideas(10) {
-                println!("{:?} +{} {:?}", idea.best.open, idea.alike, idea.best.asked[0]);
-            }
-        }
+    let start = Instant::now();
+    let ranking = rank(&question, &|_| ControlFlow::Continue(())).ok()?;
+    Some((ranking, start.elapsed().as_secs_f64()))
+}
+
+fn run() -> Option<bool> {
+    // `once STEPS` ranks once, for an instruction count
+    let mut arguments = std::env::args().skip_while(|a| a != "once").skip(1);
+    if let Some(steps) = arguments.next() {
+        let (ranking, took_s) = ranked(5, steps.parse().ok()?)?;
+        println!("{} judged, {} allowed, {took_s:.3} s", ranking.judged, ranking.allowed);
+        return Some(true);
     }
-    times.sort_by(f64::total_cmp);
-    println!("median {:.3} s, least {best:.3} s", times[rounds / 2]);
-    if times[rounds / 2] < SLOWEST_S { ExitCode::SUCCESS } else { ExitCode::FAILURE }
+    println!("outlets      examined        judged       allowed   median s   least s");
+    let mut kept = true;
+    for gates in 1..=5 {
+        let mut times = Vec::new();
+        let mut last = None;
+        for _ in 0..ROUNDS {
+            let (ranking, took_s) = ranked(gates, STEPS)?;
+            times.push(took_s);
+            last = Some(ranking);
+        }
+        times.sort_by(f64::total_cmp);
+        let (ranking, median) = (last?, times[ROUNDS / 2]);
+        println!(
+            "{:>7} {:>13} {:>13} {:>13} {median:>10.3} {:>9.3}",
+            2 * gates + OTHERS.len(),
+            ranking.examined,
+            ranking.judged,
+            ranking.allowed,
+            times[0]
+        );
+        kept = ranking.examined == ranking.judged + ranking.skipped && median < SLOWEST_S;
+    }
+    Some(kept)
+}
+
+fn main() -> ExitCode {
+    match run() {
+        Some(true) => ExitCode::SUCCESS,
+        Some(false) | None => ExitCode::FAILURE,
+    }
 }

@@ -49,6 +49,7 @@ fn scenario_escapes_in_a_site_and_its_casts_are_shown_not_sent() {
     harmless(&["pool", site], "\\u{1b}[31m");
     harmless(&["mix", site], "\\u{1b}[31m");
     harmless(&["mix", site, "--set", "Sluice=30", "--color", "never"], "\\u{1b}[31m");
+    harmless(&["rank", site], "\\u{1b}[7m1");
     harmless(&["check", site], "\\u{1b}[31m.csv");
     harmless(&[site], "\\u{1b}[31m");
 }
@@ -85,7 +86,7 @@ fn scenario_escapes_in_a_folder_to_write_to_are_shown_not_sent() {
 #[test]
 fn scenario_json_of_hostile_names_has_no_escape_and_reads_back() {
     let folder = hostile();
-    for task in ["pool", "mix"] {
+    for task in ["pool", "mix", "rank"] {
         let out = bytes(&[task, folder.named(), "--json"]);
         assert!(!out.contains(&0x1b));
         let answer: serde_json::Value = serde_json::from_slice(&out).unwrap();

@@ -88,9 +88,14 @@ fn scenario_a_pool_below_a_gate_is_an_ordinary_state() {
 fn scenario_help_version_completions_and_manual() {
     let version = run(&["--version"]);
     assert_eq!((version.code, version.out), (Some(0), format!("gatemix {}\n", env!("CARGO_PKG_VERSION"))));
-    for arguments in
-        [&["--help"][..], &["pool", "--help"], &["mix", "-h"], &["check", "--help"], &["demo", "--help"]]
-    {
+    for arguments in [
+        &["--help"][..],
+        &["pool", "--help"],
+        &["mix", "-h"],
+        &["rank", "--help"],
+        &["check", "--help"],
+        &["demo", "--help"],
+    ] {
         let help = run(arguments);
         assert_eq!((help.code, help.err.as_str()), (Some(0), ""));
         assert!(help.out.contains("Usage: gatemix"), "{}", help.out);
@@ -115,6 +120,7 @@ fn scenario_a_closed_pipe_is_no_error() {
     for arguments in [
         &["pool", site][..],
         &["mix", site, "--json"],
+        &["rank", site],
         &["check", site],
         &["completions", "bash"],
         &["man"],

@@ -9,6 +9,8 @@ mod escapes;
 mod exits;
 mod limits;
 mod loggers;
+mod rank;
+mod rank_answers;
 mod refused;
 mod stories;
 mod units;

@@ -6,14 +6,14 @@ use assert_cmd::Command;
 
 use crate::{read, root};
 
-const COMMAND: &str = "gatemix mix ashlar --set N2=500 --set S4=700";
+/// Commands whose output the README shows, in its order.
+const COMMANDS: [&str; 2] = ["gatemix mix ashlar --set N2=500 --set S4=700", "gatemix rank ashlar"];
 
-/// What the command in the README prints.
-fn printed() -> String {
-    let mut words = COMMAND.split(' ').skip(1);
+/// What a command prints.
+fn printed(command: &str) -> String {
     let output = Command::cargo_bin("gatemix")
         .unwrap()
-        .args(&mut words)
+        .args(command.split(' ').skip(1))
         // a file name in the working folder must not decide the answer
         .current_dir(root().join("docs"))
         .output()
@@ -25,15 +25,21 @@ fn printed() -> String {
 #[test]
 fn unchanged_readme_shows_what_the_program_prints() {
     let readme = read("README.md");
-    assert!(readme.contains(COMMAND), "the README names the command it shows");
-    let (head, rest) = readme.split_once("```text\n").unwrap();
-    let (shown, tail) = rest.split_once("```").unwrap();
-    let printed = printed();
-    if std::env::var_os("GATEMIX_WRITE_README").is_some() {
-        fs::write(root().join("README.md"), format!("{head}```text\n{printed}```{tail}")).unwrap();
-        return;
+    let pieces: Vec<&str> = readme.split("```text\n").collect();
+    assert_eq!(pieces.len(), COMMANDS.len() + 1, "a block for each command");
+    let mut written = pieces[0].to_owned();
+    for ((command, piece), before) in COMMANDS.iter().zip(&pieces[1..]).zip(&pieces) {
+        assert!(before.contains(&format!("`{command}`")), "the README names {command} before its block");
+        let (shown, tail) = piece.split_once("```").unwrap();
+        let printed = printed(command);
+        if std::env::var_os("GATEMIX_WRITE_README").is_none() {
+            assert_eq!(shown, printed, "rewrite with GATEMIX_WRITE_README=1 cargo test --test house");
+        }
+        written += &format!("```text\n{printed}```{tail}");
     }
-    assert_eq!(shown, printed, "rewrite with GATEMIX_WRITE_README=1 cargo test --test house");
+    if std::env::var_os("GATEMIX_WRITE_README").is_some() {
+        fs::write(root().join("README.md"), written).unwrap();
+    }
 }
 
 #[test]

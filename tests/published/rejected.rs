@@ -78,13 +78,17 @@ fn now(site: &Site, profile: &Profile, flow_m3s: f64) -> Setting {
 
 /// The ranking of a site; with what the well gives now through N1, and the temperature of that, where a change counts.
 fn ranked(site: &Site, from: Option<(f64, f64)>) -> Ranking {
+    ranked_at(site, from, FLOW_M3S)
+}
+
+fn ranked_at(site: &Site, from: Option<(f64, f64)>, flow_m3s: f64) -> Ranking {
     let profile = water(site);
     let before = from.map(|(flow, _)| now(site, &profile, flow));
     let question = Question {
         site,
         profile: &profile,
         date: NaiveDate::from_ymd_opt(2025, 7, 14).unwrap(),
-        blocks: &[(1.0, FLOW_M3S)],
+        blocks: &[(1.0, flow_m3s)],
         now: before.as_ref(),
         before: Before { flow_m3s: from.map(|f| f.0), temperature_c: from.map(|f| f.1) },
         steps: STEPS,
@@ -382,14 +386,18 @@ fn scenario_when_every_mix_is_rejected_nothing_is_ranked() {
 #[test]
 fn scenario_what_spills_by_itself_is_in_every_mix() {
     let site = changed(&[("gated: true, ", "")]);
-    let profile = water(&site);
-    let ranking = ranked(&site, None);
-    // 1.84 x 40 x 2^1.5 = 208.2 m3/s spill whatever is asked: nothing is left to share out
-    assert_eq!((ranking.examined, ranking.allowed), (1, 1));
-    let asked = &ranking.mixes[0].asked[0];
-    assert_eq!(asked.direct.len(), 1);
-    let Gate { outlet, flow_m3s, .. } = asked.direct[0];
-    assert_eq!(site.outlets[outlet].name, "Crest");
-    assert_abs_diff_eq!(flow_m3s, 1.84 * 40.0 * 2.0_f64.powf(1.5), epsilon = 1e-9);
-    assert!(profile.column.surface_m() > 59.0);
+    // 1.84 x 40 x 2^1.5 = 208.2 m3/s spill whatever is asked
+    let spilt_m3s = 1.84 * 40.0 * 2.0_f64.powf(1.5);
+    let alone = ranked_at(&site, None, FLOW_M3S);
+    assert_eq!((alone.examined, alone.allowed), (1, 1));
+    assert_abs_diff_eq!(alone.mixes[0].asked[0].direct[0].flow_m3s, spilt_m3s, epsilon = 1e-9);
+    let ranking = ranked_at(&site, None, spilt_m3s + FLOW_M3S);
+    // two units share out the rest: the well in 8 states and the sluice
+    assert_eq!((ranking.examined, ranking.allowed), (1 + 8 * 4, 1 + 8 * 4));
+    for mix in &ranking.mixes {
+        let crest: Vec<&Gate> =
+            mix.asked[0].direct.iter().filter(|g| site.outlets[g.outlet].name == "Crest").collect();
+        assert_eq!(crest.len(), 1);
+        assert_abs_diff_eq!(crest[0].flow_m3s, spilt_m3s, epsilon = 1e-9);
+    }
 }

@@ -11,6 +11,7 @@ mod words;
 
 use std::collections::HashSet;
 
+use crate::site::Site;
 use crate::units::Dimension;
 
 pub use gates::{head, level, passing, still, well};
@@ -60,6 +61,11 @@ pub enum Measure {
 }
 
 impl Measure {
+    /// A figure of a check in the unit of [`symbol`](Self::symbol).
+    pub fn figure(self, value: f64) -> f64 {
+        if self == Self::Quantity(Dimension::Percent) { 100.0 * value } else { value }
+    }
+
     /// Unit of a margin as data give it: SI, percent for shares.
     pub fn symbol(self) -> &'static str {
         match self {
@@ -156,6 +162,18 @@ pub enum Of {
     Whole,
 }
 
+impl Of {
+    /// Name of the outlet, well or share rule; `None` for the whole.
+    pub fn name(self, site: &Site) -> Option<&str> {
+        match self {
+            Self::Outlet(i) => site.outlets.get(i).map(|o| o.name.as_str()),
+            Self::Well(i) => site.wells.get(i).map(|w| w.name.as_str()),
+            Self::Share(i) => site.limits.shares.get(i).map(|s| s.name.as_str()),
+            Self::Whole => None,
+        }
+    }
+}
+
 /// One limit held against a setting. All figures in SI, shares 0 to 1.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Check {
@@ -204,8 +222,7 @@ impl Check {
 
     /// The room in the unit of the rule's [`Measure::symbol`].
     pub fn margin(&self) -> f64 {
-        let percent = self.rule.unit() == Measure::Quantity(Dimension::Percent);
-        if percent { 100.0 * self.room } else { self.room }
+        self.rule.unit().figure(self.room)
     }
 }
 

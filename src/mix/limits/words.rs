@@ -87,14 +87,8 @@ impl Check {
     }
 
     fn of_words(&self, site: &Site) -> String {
-        let name = |words: &str, name: Option<&String>| name.map(|n| format!(" of {words}`{n}`"));
-        match self.of {
-            Of::Outlet(i) => name("", site.outlets.get(i).map(|o| &o.name)),
-            Of::Well(i) => name("well ", site.wells.get(i).map(|w| &w.name)),
-            Of::Share(i) => name("", site.limits.shares.get(i).map(|s| &s.name)),
-            Of::Whole => None,
-        }
-        .unwrap_or_default()
+        let well = if matches!(self.of, Of::Well(_)) { "well " } else { "" };
+        self.of.name(site).map_or_else(String::new, |name| format!(" of {well}`{name}`"))
     }
 
     fn outage(&self) -> String {

@@ -1,5 +1,7 @@
 //! Answers as JSON: SI whatever the display, absent is null, full precision.
 
+mod rank;
+mod rank_shape;
 mod shape;
 
 use std::collections::BTreeMap;
@@ -7,42 +9,49 @@ use std::fmt::Write as _;
 
 use serde::Serialize;
 
+use crate::mix::limits::Check;
 use crate::mix::{Drawn, Gate, Mix, Setting, TargetStanding, WellState};
 use crate::problem::{Problem, Weight, is_harmful};
 use crate::site::Site;
-use crate::tasks::{Context, MixAnswer, PoolAnswer};
+use crate::tasks::{Change, Context, MixAnswer, Move, PoolAnswer};
 use crate::units::{System, in_system};
 use crate::withdrawal::{End, Opening};
 
 use shape::{
-    ColdJson, FlagJson, Head, LayeringJson, LevelJson, MixJson, NowJson, OutletJson, PoolJson, ProblemJson,
-    ProfileJson, ReleaseJson, SettingJson, TargetJson, WarningJson, WellJson, ZoneJson,
+    CheckJson, ColdJson, FlagJson, Head, LayeringJson, LevelJson, MixJson, MovedJson, NowJson, OutletJson,
+    PoolJson, ProblemJson, ProfileJson, ReleaseJson, SettingJson, TargetJson, WarningJson, WellJson,
+    ZoneJson,
 };
 
 use super::sentence::{METHOD, caution};
 
+pub use rank::rank;
+
 /// The answer of `mix`.
 pub fn mix(context: &Context, answer: &MixAnswer) -> String {
     let site = context.site();
+    let moves = answer.change.as_ref().map(|c| c.moves);
     let shown = MixJson {
         head: head(context, &context.fingerprint, &[]),
         setting: setting(site, &answer.setting),
         wells: answer.setting.wells.iter().map(|w| well(site, &answer.setting, w)).collect(),
         levels: answer.mix.levels.iter().map(|d| level(site, d)).collect(),
         release: release(&answer.mix),
-        targets: targets(site, &answer.mix),
+        targets: targets(site, &answer.mix.targets, "steady"),
         now: answer.now.as_ref().map(|(now, mix)| NowJson {
             setting: setting(site, now),
             release: release(mix),
-            targets: targets(site, mix),
+            targets: targets(site, &mix.targets, "steady"),
         }),
+        moves: moves.map(|m| m.count),
+        moved: answer.change.as_ref().map(|c| moved(site, c)),
+        crew_hours: moves.map(|m| m.crew_hours),
+        move_cost: moves.map(|m| m.cost),
+        lead_days: moves.map(|m| m.lead_days),
+        earliest: answer.change.as_ref().and_then(|c| c.earliest).map(|d| d.to_string()),
+        limits: checks(site, &answer.mix.limits),
         not_checked: answer.mix.not_checked.clone(),
-        warnings: answer
-            .mix
-            .warnings
-            .iter()
-            .map(|p| WarningJson { kind: p.kind, text: p.advice(System::Si) })
-            .collect(),
+        warnings: warnings(&answer.mix.warnings),
         caution: caution(),
     };
     written(&shown)
@@ -227,8 +236,15 @@ fn level(site: &Site, drawn: &Drawn) -> LevelJson {
     }
 }
 
+fn warnings(problems: &[Problem]) -> Vec<WarningJson> {
+    problems.iter().map(|p| WarningJson { kind: p.kind, text: p.advice(System::Si) }).collect()
+}
+
+fn ends(band: Option<(f64, f64)>) -> Option<[f64; 2]> {
+    band.map(|(low, high)| [low, high])
+}
+
 fn release(mix: &Mix) -> ReleaseJson {
-    let ends = |band: Option<(f64, f64)>| band.map(|(low, high)| [low, high]);
     ReleaseJson {
         flow_m3s: mix.release.flow_m3s,
         temperature_c: mix.release.temperature_c,
@@ -238,17 +254,17 @@ fn release(mix: &Mix) -> ReleaseJson {
     }
 }
 
-fn targets(site: &Site, mix: &Mix) -> Vec<TargetJson> {
-    mix.targets.iter().map(|s| target(site, s)).collect()
+fn targets(site: &Site, standings: &[TargetStanding], basis: &'static str) -> Vec<TargetJson> {
+    standings.iter().map(|s| target(site, s, basis)).collect()
 }
 
-fn target(site: &Site, s: &TargetStanding) -> TargetJson {
+fn target(site: &Site, s: &TargetStanding, basis: &'static str) -> TargetJson {
     let rule = &site.targets[s.target];
     TargetJson {
         name: rule.name.clone(),
         point: rule.point.clone(),
         statistic: rule.statistic.name(),
-        basis: "steady",
+        basis,
         value_c: s.value_c,
         low_c: rule.low_c,
         preferred_c: rule.preferred_c,
@@ -266,4 +282,30 @@ fn target(site: &Site, s: &TargetStanding) -> TargetJson {
         governs: s.governs,
         source: rule.source.clone(),
     }
+}
+
+/// Limits as they are held against a setting.
+fn checks(site: &Site, checks: &[Check]) -> Vec<CheckJson> {
+    let one = |c: &Check| CheckJson {
+        rule: c.rule.name(),
+        group: c.rule.group().words(),
+        of: c.of.name(site).map(str::to_owned),
+        found: c.rule.unit().figure(c.found),
+        bound: c.rule.unit().figure(c.bound),
+        room: c.margin(),
+        unit: c.rule.unit().symbol(),
+    };
+    checks.iter().map(one).collect()
+}
+
+/// What is to be moved.
+fn moved(site: &Site, change: &Change) -> Vec<MovedJson> {
+    let one = |m: &Move| MovedJson {
+        outlet: site.outlets[m.outlet].name.clone(),
+        from_open: 100.0 * m.from,
+        to_open: 100.0 * m.to,
+        from_m3s: m.from_m3s,
+        to_m3s: m.to_m3s,
+    };
+    change.moved.iter().map(one).collect()
 }

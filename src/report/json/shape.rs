@@ -46,6 +46,13 @@ pub(super) struct MixJson {
     pub(super) release: ReleaseJson,
     pub(super) targets: Vec<TargetJson>,
     pub(super) now: Option<NowJson>,
+    pub(super) moves: Option<usize>,
+    pub(super) moved: Option<Vec<MovedJson>>,
+    pub(super) crew_hours: Option<f64>,
+    pub(super) move_cost: Option<f64>,
+    pub(super) lead_days: Option<f64>,
+    pub(super) earliest: Option<String>,
+    pub(super) limits: Vec<CheckJson>,
     pub(super) not_checked: Vec<String>,
     pub(super) warnings: Vec<WarningJson>,
     pub(super) caution: &'static str,
@@ -131,6 +138,27 @@ pub(super) struct TargetJson {
     pub(super) share_inside_both: Option<f64>,
     pub(super) governs: bool,
     pub(super) source: Option<String>,
+}
+
+#[derive(Serialize)]
+pub(super) struct MovedJson {
+    pub(super) outlet: String,
+    pub(super) from_open: f64,
+    pub(super) to_open: f64,
+    pub(super) from_m3s: f64,
+    pub(super) to_m3s: f64,
+}
+
+/// A limit held against a setting; `room` is below zero where it is missed, null where nothing bounds it.
+#[derive(Serialize)]
+pub(super) struct CheckJson {
+    pub(super) rule: &'static str,
+    pub(super) group: &'static str,
+    pub(super) of: Option<String>,
+    pub(super) found: f64,
+    pub(super) bound: f64,
+    pub(super) room: f64,
+    pub(super) unit: &'static str,
 }
 
 #[derive(Serialize)]

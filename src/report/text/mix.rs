@@ -10,6 +10,7 @@ use crate::tasks::{Context, MixAnswer};
 use crate::units::{Dimension, System, figure};
 use crate::withdrawal::{End, Side};
 
+use super::gates::moves;
 use super::{
     drawn_column, fitted, flags_of, flow, labelled, length, list, oxygen, step, temperature, wrapped,
 };
@@ -26,6 +27,10 @@ pub(super) fn body(context: &Context, answer: &MixAnswer) -> String {
     out.push_str(&labelled("Release", &release_line(&answer.mix, system)));
     if let Some((now, mix)) = &answer.now {
         out.push_str(&against_now(site, now, mix, &answer.mix, system));
+        if let Some(change) = &answer.change {
+            let crew = format!("{:.1} crew hours", change.moves.crew_hours);
+            out.push_str(&labelled("Change", &format!("{}; {crew}", moves(context, change))));
+        }
     }
     out.push_str(&labelled("", "leaving the pool; brackets hold 10-90 % of our perturbed cases"));
     out.push('\n');
@@ -127,7 +132,7 @@ fn against_now(site: &Site, now: &Setting, was: &Mix, tried: &Mix, system: Syste
     out
 }
 
-fn range(rule: &Target, system: System) -> String {
+pub(super) fn range(rule: &Target, system: System) -> String {
     let unit = system.unit(Dimension::Temperature);
     let mut parts = Vec::new();
     match (rule.low_c, rule.high_c) {

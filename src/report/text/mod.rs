@@ -1,13 +1,16 @@
 //! Answers as text a person can read aloud.
 
+mod gates;
 mod mix;
 mod pool;
+mod rank;
 
 use std::fmt::Write as _;
 
 use unicode_width::UnicodeWidthStr;
 
 use crate::problem::{Problem, Weight, harmless};
+use crate::tasks::rank::RankAnswer;
 use crate::tasks::{Context, Freshness, MixAnswer, PoolAnswer};
 use crate::units::{Dimension, System, show};
 
@@ -39,6 +42,14 @@ pub fn mix(context: &Context, answer: &MixAnswer) -> String {
     out.push_str(&mix::body(context, answer));
     out.push_str(&cast_flags(context, &[]));
     out.push_str(&mix::not_checked(answer));
+    out.push_str(&wrapped(caution(), 0));
+    out
+}
+
+/// The answer of `rank`.
+pub fn rank(context: &Context, answer: &RankAnswer) -> String {
+    let mut out = head(context, &context.fingerprint);
+    out.push_str(&rank::body(context, answer));
     out.push_str(&wrapped(caution(), 0));
     out
 }

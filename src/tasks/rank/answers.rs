@@ -1,14 +1,13 @@
 //! Answers beyond the list: the trade between temperature and oxygen, lost gates, the exact split, the least release,
 //! and what more of it does.
 
-use std::ops::ControlFlow;
-
 use crate::mix::{Asked, Gate};
-use crate::rank::{Criterion, Question, Ranked, Ranking, rank as search};
+use crate::rank::{Criterion, Progress, Question, Ranked, Ranking, rank as search};
 use crate::target::Target;
 
-use super::reasons::reasons;
-use super::shown::{Kitchen, Shown};
+use super::kitchen::Kitchen;
+use super::reasons::{behind, reasons};
+use super::shown::Shown;
 
 /// Shares of two parts between which roots are sought (choice).
 const PLACES: u32 = 40;
@@ -37,7 +36,7 @@ pub struct Trade {
     pub temperature_c: f64,
     /// See `temperature_c`.
     pub oxygen_mg_l: Option<f64>,
-    /// What is set in the first part of the day.
+    /// What is set, flows as their time means.
     pub gates: Vec<Gate>,
 }
 
@@ -75,8 +74,8 @@ pub enum Part {
 /// The splits of two parts of a mix that give the preferred temperature.
 #[derive(Debug, Clone, PartialEq)]
 pub struct PreferredSplit {
-    /// The mix; everything else in it stays.
-    pub mix: Ranked,
+    /// What is open; everything but the split stays.
+    pub gates: Vec<Gate>,
     /// The two parts that are varied.
     pub between: [Part; 2],
     /// The temperature wanted, C.
@@ -125,19 +124,39 @@ impl Answers<'_> {
             ideas.par_iter().filter_map(|idea| self.kitchen.ranked(idea.best, idea.alike)).collect();
         let mut before: Option<f64> = None;
         for (shown, idea) in mixes.iter_mut().zip(&ideas) {
-            let behind = before.and_then(|key| Criterion::first_apart(self.question.order, key, idea.key));
-            shown.reasons = reasons(self.question.site, shown, before.map(|_| behind));
+            shown.reasons = reasons(self.question.site, shown);
+            shown
+                .reasons
+                .extend(before.map(|key| behind(Criterion::first_apart(self.question.order, key, idea.key))));
             before = Some(idea.key);
         }
         mixes
+    }
+
+    /// Where no mix keeps every target, the one that comes nearest. In the usual order the first mix keeps every
+    /// target if any does; where another order hides that, it is asked for again.
+    pub(super) fn nearest(&self, mixes: &[Shown], progress: Progress) -> Option<Shown> {
+        let site = self.question.site;
+        if mixes.iter().any(|shown| shown.keeps_all(site)) {
+            return None;
+        }
+        let targets_first = |c: &Criterion| matches!(c, Criterion::Oxygen | Criterion::Range);
+        let nearest = if self.question.order.iter().take(2).all(targets_first) {
+            mixes.first()?.clone()
+        } else {
+            let order = Criterion::NAMES.map(|c| c.1);
+            let question = Question { order: &order, ..*self.question };
+            let ranking = search(&question, progress).ok()?;
+            self.kitchen.ranked(ranking.mixes.first()?, 0)?
+        };
+        (!nearest.keeps_all(site)).then_some(nearest)
     }
 
     /// The trade curve, in full. Mixes that the full computation shows to be beaten by a hair stay.
     pub(super) fn trade(&self) -> Vec<Trade> {
         let of = |mix: &Ranked| {
             let (temperature_c, oxygen_mg_l) = self.kitchen.release(mix)?;
-            let gates = self.kitchen.resolved(mix.asked.first()?).gates;
-            Some(Trade { mix: mix.clone(), temperature_c, oxygen_mg_l, gates })
+            Some(Trade { mix: mix.clone(), temperature_c, oxygen_mg_l, gates: self.kitchen.gates(mix) })
         };
         self.ranking.trade.iter().filter_map(|e| of(&e.mix)).collect()
     }
@@ -237,12 +256,12 @@ impl Answers<'_> {
         let temperatures = || places.iter().map(|p| p.1.0);
         let bracket_c =
             [temperatures().fold(f64::INFINITY, f64::min), temperatures().fold(f64::NEG_INFINITY, f64::max)];
-        Some(PreferredSplit { mix: mix.clone(), between, preferred_c, roots, bracket_c })
+        Some(PreferredSplit { gates: self.kitchen.gates(mix), between, preferred_c, roots, bracket_c })
     }
 
     /// The least steady release with which some mix keeps every target, at splits of a tenth: of rising releases the
     /// first, drawn in by halving. `None` without a target or with blocks of the day.
-    pub(super) fn least(&self, progress: &(dyn Fn(f64) -> ControlFlow<()> + Sync)) -> Option<Least> {
+    pub(super) fn least(&self, progress: Progress) -> Option<Least> {
         let q = self.question;
         let valid = q.site.targets.iter().any(|t| t.span.contains(q.date));
         let &[(_, asked_m3s)] = q.blocks else { return None };
@@ -260,8 +279,7 @@ impl Answers<'_> {
             // in the usual order the first mix keeps every target if any does
             let first = ranking.mixes.first()?;
             let shown = self.kitchen.ranked(first, 0)?;
-            let kept = shown.targets.iter().all(|s| !s.missed() && !s.unknown(q.site));
-            kept.then_some(shown)
+            shown.keeps_all(q.site).then_some(shown)
         };
         let flow = |i: u32| low * (high / low).powf(f64::from(i) / f64::from(LEAST_TRIES));
         let mut below = low;
@@ -281,7 +299,7 @@ impl Answers<'_> {
                     None => below = middle,
                 }
             }
-            let gates = found.parts.first()?.setting.gates.clone();
+            let gates = found.day.gates;
             return Some(Least { flow_m3s: Some(least), tried_m3s: [low, high], gates });
         }
         Some(Least { flow_m3s: None, tried_m3s: [low, high], gates: Vec::new() })

@@ -2,6 +2,7 @@
 
 mod answers;
 mod asked;
+mod kitchen;
 mod reasons;
 mod shown;
 
@@ -15,12 +16,13 @@ use crate::rank::{Criterion, Question, Ranking, Stopped, rank as search};
 use super::words::Word;
 use super::{Context, Failure, now_setting, setting};
 
-pub use answers::{Least, Lost, Pocket, PreferredSplit, Root, Trade};
+pub use answers::{Least, Lost, Part, Pocket, PreferredSplit, Root, Trade};
 pub use asked::{RankAsked, ReleaseFrom};
-pub use shown::{Move, Shown, Unsure};
+pub use shown::{Shown, ShownPart, Unsure};
 
 use answers::Answers;
-use shown::Kitchen;
+use kitchen::Kitchen;
+use reasons::reasons;
 
 /// The answer of `rank`.
 #[derive(Debug, Clone)]
@@ -47,6 +49,9 @@ pub struct RankAnswer {
     pub attainable_c: Option<[f64; 2]>,
     /// Least and most oxygen of allowed releases, computed in full, mg/L.
     pub attainable_oxygen_mg_l: Option<[f64; 2]>,
+    /// Where no mix keeps every target: the one that comes nearest, by oxygen first and then by temperature. `None`
+    /// where one does, or where none is allowed.
+    pub nearest: Option<Box<Shown>>,
     /// Mixes no other beats in both temperature and oxygen.
     pub trade: Vec<Trade>,
     /// The best fallback for each single gate lost, of those the best mix or the setting now uses.
@@ -61,6 +66,36 @@ pub struct RankAnswer {
     pub notes: Vec<Problem>,
 }
 
+/// Why nothing fits.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum NothingFits {
+    /// Every mix breaks a limit.
+    NoneAllowed,
+    /// No mix is known to keep every target.
+    NoneReaches,
+}
+
+impl NothingFits {
+    /// As every output says it.
+    pub fn words(self) -> &'static str {
+        match self {
+            Self::NoneAllowed => "every mix examined breaks a limit",
+            Self::NoneReaches => "no mix examined reaches every target",
+        }
+    }
+}
+
+impl RankAnswer {
+    /// Why nothing fits; `None` where some mix does.
+    pub fn nothing_fits(&self) -> Option<NothingFits> {
+        if self.mixes.is_empty() {
+            Some(NothingFits::NoneAllowed)
+        } else {
+            self.nearest.as_ref().map(|_| NothingFits::NoneReaches)
+        }
+    }
+}
+
 /// Ranks every mix of a site. `progress` is told how much is done and may stop it.
 ///
 /// # Errors
@@ -73,49 +108,27 @@ pub fn rank(
     let site = context.site();
     let plan = asked::plan(context, asked)?;
     let mut notes = plan.notes;
-    let now = match &asked.now[..] {
-        [] => now_setting(context),
-        words => {
-            let words: Vec<Word> = words.iter().map(|w| Word::Now(w)).collect();
-            setting(context, &words)
-        }
-    };
-    let now: Option<Setting> = match now {
-        Ok(understood) => {
-            notes.extend(understood.notes);
-            Some(understood.setting)
-        }
-        Err(failure) if !asked.now.is_empty() => return Err(failure),
-        Err(failure) => {
-            notes.push(no_now(failure));
-            None
-        }
-    };
+    let now = now(context, &asked.now, &mut notes)?;
     let (blocks, release_from) = asked::release(context, asked, now.as_ref())?;
     let perturbed = Perturbed::new(site, &context.profile, context.age_days);
     let groups = groups(site);
     let date = context.on.date_naive();
-    let mut kitchen = Kitchen {
-        context,
-        perturbed: &perturbed,
-        groups: &groups,
-        date,
-        now: now.as_ref(),
-        before: Before::default(),
-    };
-    let now_shown = now.as_ref().and_then(|setting| kitchen.now(setting));
-    if let Some(shown) = &now_shown {
-        kitchen.before = Before {
-            flow_m3s: Some(shown.parts.iter().map(|p| p.share * p.mix.release.flow_m3s).sum()),
-            temperature_c: Some(shown.temperature_c),
-        };
+    let (now, before) = (now.as_ref(), Before::default());
+    let mut kitchen = Kitchen { context, perturbed: &perturbed, groups: &groups, date, now, before };
+    if let Some(release) = now.and_then(|setting| kitchen.blend(setting)) {
+        kitchen.before =
+            Before { flow_m3s: Some(release.flow_m3s), temperature_c: Some(release.temperature_c) };
+    }
+    let mut now_shown = now.and_then(|setting| kitchen.now(setting));
+    if let Some(shown) = &mut now_shown {
+        shown.reasons = reasons(site, shown);
     }
     let question = Question {
         site,
         profile: &context.profile,
         date,
         blocks: &blocks,
-        now: now.as_ref(),
+        now,
         before: kitchen.before,
         steps: plan.steps,
         order: &plan.order,
@@ -134,25 +147,46 @@ pub fn rank(
     let trade = answers.trade();
     let lost = answers.lost();
     let apart = answers.apart(&mixes, &trade);
-    Ok(RankAnswer {
+    let answer = RankAnswer {
         attainable_c: coldest.and_then(|[a, b]| Some([a?.0, b?.0])),
         attainable_oxygen_mg_l: oxygen.and_then(|[a, b]| Some([a?.1?, b?.1?])),
         split: answers.preferred_split(),
         least: answers.least(progress),
         pocket: answers.pocket(),
-        blocks,
+        blocks: blocks.clone(),
         release_from,
         steps: plan.steps,
         order: plan.order.clone(),
         without: plan.without.clone(),
-        mixes,
         now: now_shown,
         apart,
+        nearest: answers.nearest(&mixes, progress).map(Box::new),
         trade,
         lost,
+        mixes,
         notes,
-        ranking,
-    })
+        ranking: ranking.clone(),
+    };
+    // whoever stops it while answers are sought would read less than there is
+    if progress(1.0).is_break() { Err(Failure::Stopped) } else { Ok(answer) }
+}
+
+/// The setting now, as typed or else as the site file gives it; what was assumed, or why there is none, becomes a note.
+fn now(context: &Context, typed: &[String], notes: &mut Vec<Problem>) -> Result<Option<Setting>, Failure> {
+    let understood = if typed.is_empty() {
+        match now_setting(context) {
+            Ok(understood) => understood,
+            Err(failure) => {
+                notes.push(no_now(failure));
+                return Ok(None);
+            }
+        }
+    } else {
+        let words: Vec<Word> = typed.iter().map(|w| Word::Now(w)).collect();
+        setting(context, &words)?
+    };
+    notes.extend(understood.notes);
+    Ok(Some(understood.setting))
 }
 
 /// Why there is no setting now, plainly.

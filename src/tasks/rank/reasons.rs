@@ -8,25 +8,27 @@ use crate::units::say;
 
 use super::shown::Shown;
 
-/// Reasons of a mix; `behind` is the criterion that puts it behind the one before, where there is one: `None` where no
-/// criterion tells them apart.
-pub(super) fn reasons(site: &Site, shown: &Shown, behind: Option<Option<Criterion>>) -> Vec<String> {
+/// What a mix gives and takes.
+pub(super) fn reasons(site: &Site, shown: &Shown) -> Vec<String> {
     let mut out = Vec::new();
     for standing in shown.targets.iter().filter(|s| s.governs || s.missed()) {
         let rule = &site.targets[standing.target];
-        out.extend(warmth(rule, standing));
-        out.extend(air(rule, standing));
+        let words: Vec<String> =
+            [warmth(rule, standing), air(rule, standing)].into_iter().flatten().collect();
+        if !words.is_empty() {
+            out.push(format!("{}: {}", rule.name, words.join(", ")));
+        }
     }
     if let (Some(cold), Some(threshold)) = (shown.cold_m3_per_day, site.cold_water_c.first()) {
-        let flow_m3: f64 = shown.parts.iter().map(|p| p.share * p.mix.release.flow_m3s * 86_400.0).sum();
+        let share = cold / (86_400.0 * shown.flow_m3s);
         out.push(format!(
-            "takes {} a day colder than {}, {:.0} % of the release",
+            "takes {} a day below {}, {:.0} % of the release",
             say::m3(cold, 0),
             say::c(*threshold, 1),
-            100.0 * cold / flow_m3
+            100.0 * share
         ));
     }
-    if let Some(moves) = shown.moves {
+    if let Some(moves) = shown.change.as_ref().map(|c| c.moves) {
         let crew = if moves.crew_hours > 0.0 {
             format!(", {:.1} crew hours", moves.crew_hours)
         } else {
@@ -38,12 +40,15 @@ pub(super) fn reasons(site: &Site, shown: &Shown, behind: Option<Option<Criterio
             n => format!("{n} gates move{crew}"),
         });
     }
-    match behind {
-        None => {}
-        Some(Some(criterion)) => out.push(format!("behind the one before by {}", words(criterion))),
-        Some(None) => out.push("level with the one before; elevation and name decide".to_owned()),
-    }
     out
+}
+
+/// What puts a mix behind the one before; `None` where no criterion tells them apart.
+pub(super) fn behind(criterion: Option<Criterion>) -> String {
+    match criterion {
+        Some(criterion) => format!("behind the one before by {}", words(criterion)),
+        None => "level with the one before; elevation and name decide".to_owned(),
+    }
 }
 
 /// A criterion in a sentence.
@@ -59,34 +64,31 @@ fn words(criterion: Criterion) -> &'static str {
 
 fn warmth(rule: &Target, standing: &TargetStanding) -> Option<String> {
     let value = standing.value_c?;
-    let name = &rule.name;
     let by = standing.temperature.1.unwrap_or(0.0);
+    let shown = say::c(value, 1);
     match standing.temperature.0 {
         Standing::Unknown => None,
-        Standing::Below => Some(format!("{name}: {} is {} too cold", say::c(value, 1), say::dc(by, 1))),
-        Standing::Above => Some(format!("{name}: {} is {} too warm", say::c(value, 1), say::dc(by, 1))),
+        Standing::Below => Some(format!("{shown} is {} too cold", say::dc(by, 1))),
+        Standing::Above => Some(format!("{shown} is {} too warm", say::dc(by, 1))),
         Standing::Inside => Some(match rule.preferred_c {
             Some(preferred) => format!(
-                "{name}: {} is inside its range, {} from the preferred {}",
-                say::c(value, 1),
-                say::dc((value - preferred).abs(), 1),
-                say::c(preferred, 1)
+                "{shown} is inside its range, {} from the preferred",
+                say::dc((value - preferred).abs(), 1)
             ),
-            None => format!("{name}: {} is inside its range", say::c(value, 1)),
+            None => format!("{shown} is inside its range"),
         }),
     }
 }
 
 fn air(rule: &Target, standing: &TargetStanding) -> Option<String> {
     let floor = rule.oxygen_min_mg_l?;
-    let name = &rule.name;
     Some(match (standing.oxygen_mg_l, standing.oxygen.0) {
         (Some(oxygen), Standing::Below) => {
-            format!("{name}: oxygen {oxygen:.1} mg/L is {:.1} mg/L below its floor", floor - oxygen)
+            format!("oxygen {oxygen:.1} mg/L is {:.1} mg/L below its floor", floor - oxygen)
         }
         (Some(oxygen), Standing::Inside) => {
-            format!("{name}: oxygen {oxygen:.1} mg/L keeps its floor of {floor:.1} mg/L")
+            format!("oxygen {oxygen:.1} mg/L keeps its floor")
         }
-        _ => format!("{name}: oxygen is not known"),
+        _ => "oxygen is not known".to_owned(),
     })
 }

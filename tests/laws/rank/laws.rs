@@ -14,7 +14,7 @@ use super::limits::limit;
 use super::sites::{Case, case};
 use crate::mix::sites::day;
 
-const CASES: u64 = 60;
+const CASES: u64 = 50;
 
 fn ranking(case: &Case) -> Option<Ranking> {
     let dam = case.dam()?;

@@ -18,7 +18,7 @@ use crate::columns::worked;
 
 const POOL_M: f64 = 72.0;
 const DRAWS: usize = 10_000;
-const LARGE_DAMS: usize = 8;
+const LARGE_DAMS: usize = 5;
 /// Round-off of sums taken in another order.
 const SAME: f64 = 1e-9;
 /// Most and fewest mixes of a random dam that is ranked with and without passing over: more take too long, of fewer

@@ -1,0 +1,155 @@
+//! From what was typed to the bytes of an answer.
+
+use std::path::Path;
+
+use chrono::{DateTime, Utc};
+use clap::CommandFactory;
+
+use crate::files::atomic;
+use crate::files::folder::{demonstration_files, demonstrations};
+use crate::mix::TargetStanding;
+use crate::problem::{Problem, any_refused, harmless};
+use crate::report::{json, text};
+use crate::tasks::{self, Asked, Failure, Word};
+
+use super::arguments::{Cli, Command};
+use super::colour::Colour;
+use super::endings::{End, Stop};
+use super::progress::Progress;
+
+/// The answer to a command line, at a moment.
+///
+/// # Errors
+/// Why there is none.
+pub(super) fn answer(cli: &Cli, clock: DateTime<Utc>, progress: Progress) -> Result<(Vec<u8>, End), Stop> {
+    let strictly = |strict: bool, missed: bool| if strict && missed { End::Missed } else { End::Answered };
+    let (shown, end) = match &cli.command {
+        None => {
+            mistyped(cli.folder.as_deref())?;
+            let asked = Asked { site: cli.folder.clone(), ..Asked::default() };
+            let context = tasks::open(&asked, clock)?;
+            let pool = tasks::pool(&context);
+            let shown = match tasks::mix(&context, &[]) {
+                Ok(mix) => text::both(&context, &pool, &mix),
+                // no setting now in flows: the pool alone is the answer
+                Err(Failure::Usage(_)) => text::pool(&context, &pool),
+                Err(failure) => return Err(failure.into()),
+            };
+            (Colour::Auto.of(&shown), End::Answered)
+        }
+        Some(Command::Pool { common }) => {
+            let context = tasks::open(&common.asked(), clock)?;
+            let answer = tasks::pool(&context);
+            let shown = if common.json {
+                json::pool(&context, &answer)
+            } else {
+                common.color.of(&text::pool(&context, &answer))
+            };
+            (shown, End::Answered)
+        }
+        Some(Command::Mix { common, set, open, release, strict }) => {
+            let context = tasks::open(&common.asked(), clock)?;
+            let words: Vec<Word> = (set.iter().map(|text| Word::Set(text)))
+                .chain(open.iter().map(|text| Word::Open(text)))
+                .chain(release.iter().map(|text| Word::Release(text)))
+                .collect();
+            let answer = tasks::mix(&context, &words)?;
+            let shown = if common.json {
+                json::mix(&context, &answer)
+            } else {
+                common.color.of(&text::mix(&context, &answer))
+            };
+            (shown, strictly(*strict, answer.mix.targets.iter().any(TargetStanding::missed)))
+        }
+        Some(Command::Rank { common, asked, strict }) => {
+            let context = tasks::open(&common.asked(), clock)?;
+            let answer = tasks::rank::rank(&context, &asked.asked(), &|done| progress.tell(done))?;
+            drop(progress);
+            let shown = if common.json {
+                json::rank(&context, &answer)
+            } else {
+                common.color.of(&text::rank(&context, &answer))
+            };
+            let best = answer.mixes.first();
+            let missed = best.is_none_or(|best| best.targets.iter().any(TargetStanding::missed));
+            (shown, strictly(*strict, missed))
+        }
+        Some(Command::Check { site, json }) => {
+            let (problems, system) = tasks::check(site);
+            let shown = if *json { json::check(&problems) } else { text::check(site, &problems, system) };
+            (shown, if any_refused(&problems) { End::Refused } else { End::Answered })
+        }
+        Some(Command::Demo { folder }) => (demo(folder)?, End::Answered),
+        Some(Command::Completions { shell }) => {
+            let mut bytes = Vec::new();
+            clap_complete::generate(*shell, &mut Cli::command(), "gatemix", &mut bytes);
+            return Ok((bytes, End::Answered));
+        }
+        Some(Command::Man) => {
+            let mut bytes = Vec::new();
+            return match clap_mangen::Man::new(Cli::command()).render(&mut bytes) {
+                Ok(()) => Ok((bytes, End::Answered)),
+                Err(error) => Err(Stop::Machine(Problem::refused("manual", error.to_string(), ""))),
+            };
+        }
+    };
+    Ok((shown.into_bytes(), end))
+}
+
+/// A lone word that is neither a path nor a demonstration site was meant as a command.
+fn mistyped(word: Option<&str>) -> Result<(), Failure> {
+    let Some(word) = word else { return Ok(()) };
+    let names = demonstrations();
+    if word.contains(std::path::MAIN_SEPARATOR) || Path::new(word).exists() || names.contains(&word) {
+        return Ok(());
+    }
+    let commands: Vec<String> = Cli::command()
+        .get_subcommands()
+        .filter(|c| !c.is_hide_set())
+        .map(|c| c.get_name().to_owned())
+        .collect();
+    Err(Failure::Usage(format!(
+        "`{word}` is no folder, no demonstration site ({}) and no command ({})",
+        names.join(", "),
+        commands.join(", ")
+    )))
+}
+
+/// Writes the demonstration sites below a folder. A file that is there with other contents is left alone and stops
+/// the writing before it begins, so nothing of the user's is lost.
+fn demo(folder: &Path) -> Result<String, Stop> {
+    let files = demonstration_files();
+    let differs = |path: &Path, bytes: &[u8]| std::fs::read(path).is_ok_and(|there| there != bytes);
+    for (path, bytes) in &files {
+        let target = folder.join(path);
+        if differs(&target, bytes) {
+            return Err(Stop::Machine(
+                Problem::refused(
+                    "exists",
+                    "a file with other contents is there; nothing was written",
+                    "name another folder",
+                )
+                .in_file(target.display().to_string()),
+            ));
+        }
+    }
+    for (path, bytes) in &files {
+        let target = folder.join(path);
+        if let Some(parent) = target.parent() {
+            std::fs::create_dir_all(parent).map_err(|error| {
+                Stop::Machine(
+                    Problem::refused("cannot-write", error.to_string(), "name a folder you may write to")
+                        .in_file(parent.display().to_string()),
+                )
+            })?;
+        }
+        atomic::write(&target, bytes).map_err(Stop::Machine)?;
+    }
+    let first = demonstrations().first().copied().unwrap_or_default();
+    Ok(format!(
+        "wrote {} files below {}; try: gatemix pool {}\n",
+        files.len(),
+        harmless(&folder.display().to_string()),
+        harmless(&folder.join(first).display().to_string())
+    ))
+}

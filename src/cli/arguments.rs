@@ -1,0 +1,167 @@
+//! What can be typed after `gatemix`.
+
+use std::path::PathBuf;
+
+use clap::{Args, Parser, Subcommand, ValueEnum};
+
+use crate::tasks::Asked;
+use crate::tasks::rank::RankAsked;
+use crate::units::System;
+
+use super::colour::Colour;
+
+/// Which gates, how far open: release temperature and oxygen from a layered reservoir.
+#[derive(Debug, Parser)]
+#[command(name = "gatemix", version, args_conflicts_with_subcommands = true, after_help = crate::report::caution())]
+pub(super) struct Cli {
+    /// A site folder; without one, the first demonstration site.
+    pub(super) folder: Option<String>,
+    #[command(subcommand)]
+    pub(super) command: Option<Command>,
+}
+
+#[derive(Debug, Subcommand)]
+pub(super) enum Command {
+    /// Is this profile sound, how is the water layered?
+    Pool {
+        #[command(flatten)]
+        common: Common,
+    },
+    /// What comes out of a gate setting?
+    Mix {
+        #[command(flatten)]
+        common: Common,
+        /// A gate and its flow, such as N1=30 or Sluice=5cfs, or a well and its total; repeat for each. Without
+        /// any setting, the one now.
+        #[arg(long = "set", value_name = "GATE=FLOW")]
+        set: Vec<String>,
+        /// A gate and its opening, such as N1=50% or the name of a position; its well decides the flow.
+        #[arg(long = "open", value_name = "GATE=OPENING")]
+        open: Vec<String>,
+        /// What the well of the gates opened carries, where only one well has any and nothing is set beside.
+        #[arg(long, value_name = "FLOW")]
+        release: Option<String>,
+        /// Exit with 4 when a target is missed.
+        #[arg(long)]
+        strict: bool,
+    },
+    /// Which mixes fit, in what order, and why not the rest?
+    Rank {
+        #[command(flatten)]
+        common: Common,
+        #[command(flatten)]
+        asked: Ranked,
+        /// Exit with 4 when the best mix misses a target, or none is allowed.
+        #[arg(long)]
+        strict: bool,
+    },
+    /// Are my files sound? Every problem of the site file and of every cast.
+    Check {
+        /// Site folder.
+        site: String,
+        /// As JSON.
+        #[arg(long)]
+        json: bool,
+    },
+    /// Write the demonstration sites out as files.
+    Demo {
+        /// Folder to write them into.
+        #[arg(default_value = "gatemix-sites")]
+        folder: PathBuf,
+    },
+    /// Shell completions.
+    #[command(hide = true)]
+    Completions {
+        /// Shell to complete for.
+        shell: clap_complete::Shell,
+    },
+    /// The manual page.
+    #[command(hide = true)]
+    Man,
+}
+
+#[derive(Debug, Args)]
+pub(super) struct Common {
+    /// Site folder, its site.yaml, or the name of a demonstration site.
+    site: String,
+    /// The cast: a file, or - for standard input; without it, the newest.
+    #[arg(long, value_name = "FILE")]
+    profile: Option<String>,
+    /// When that cast was taken, where its file does not say.
+    #[arg(long, value_name = "TIME")]
+    taken: Option<String>,
+    /// Pool elevation, with a unit or in the site's.
+    #[arg(long, value_name = "ELEVATION", allow_hyphen_values = true)]
+    pool: Option<String>,
+    /// The date and time to decide for, or `now`.
+    #[arg(long, value_name = "DATE")]
+    on: Option<String>,
+    /// Units shown; without it, the site's.
+    #[arg(long, value_enum)]
+    units: Option<Units>,
+    /// As JSON, in SI.
+    #[arg(long)]
+    pub(super) json: bool,
+    /// Whether to colour.
+    #[arg(long, value_enum, default_value_t = Colour::Auto)]
+    pub(super) color: Colour,
+}
+
+#[derive(Debug, Clone, Copy, ValueEnum)]
+enum Units {
+    Us,
+    Si,
+}
+
+impl Common {
+    pub(super) fn asked(&self) -> Asked {
+        Asked {
+            site: Some(self.site.clone()),
+            profile: self.profile.clone(),
+            taken: self.taken.clone(),
+            pool: self.pool.clone(),
+            on: self.on.clone(),
+            units: self.units.map(|u| match u {
+                Units::Us => System::Us,
+                Units::Si => System::Si,
+            }),
+        }
+    }
+}
+
+#[derive(Debug, Args)]
+pub(super) struct Ranked {
+    /// Total release; without it the site's blocks of the day, what it wants, what is released now, or its least.
+    #[arg(long, value_name = "FLOW")]
+    release: Option<String>,
+    /// A gate as it stands now, such as N1=30, N1=50% or the name of a position; repeat for each. Without any, as
+    /// the site file says.
+    #[arg(long, value_name = "GATE=FLOW|GATE=OPENING")]
+    now: Vec<String>,
+    /// Step in which the release is split; without it, 5%.
+    #[arg(long, value_name = "PERCENT")]
+    step: Option<String>,
+    /// What counts first, comma between: oxygen, range, preferred, cold_water, moves. Those left out follow in
+    /// this order.
+    #[arg(long, value_name = "CRITERIA")]
+    order: Option<String>,
+    /// Number of mixes shown.
+    #[arg(long, value_name = "NUMBER", default_value_t = 10, value_parser = clap::value_parser!(u16).range(1..))]
+    top: u16,
+    /// A gate that is not to be used; repeat for each.
+    #[arg(long, value_name = "GATE")]
+    without: Vec<String>,
+}
+
+impl Ranked {
+    pub(super) fn asked(&self) -> RankAsked {
+        RankAsked {
+            release: self.release.clone(),
+            now: self.now.clone(),
+            step: self.step.clone(),
+            order: self.order.clone(),
+            top: usize::from(self.top),
+            without: self.without.clone(),
+        }
+    }
+}

@@ -1,0 +1,164 @@
+//! Below the list: no. 1 in words, and the answers beyond the list.
+
+use std::fmt::Write as _;
+
+use crate::mix::Gate;
+use crate::problem::harmless;
+use crate::tasks::Context;
+use crate::tasks::rank::{Least, Lost, Part, Pocket, PreferredSplit, RankAnswer, Root, Shown, Trade};
+use crate::units::{Dimension, System, figure, in_system};
+
+use super::{block_name, flags, flow, labelled, oxygen, temperature};
+use crate::report::sentence::unsure_words;
+use crate::report::text::gates::{instruction, moves, named, openings};
+
+/// A step of the release that the pocket rule speaks of, cfs and m3/s.
+const POCKET: (f64, f64) = (100.0, 10.0);
+
+/// What to set for the best mix, why it stands first, what is not sure of it, and what to beware of.
+pub(super) fn best(context: &Context, best: &Shown) -> String {
+    let system = context.system;
+    let mut set: Vec<String> = Vec::new();
+    for (at, part) in best.parts.iter().enumerate() {
+        let lead = if best.parts.len() > 1 { block_name(context, at) + ": " } else { String::new() };
+        set.push(lead + &instruction(context, part));
+    }
+    // that no gate moves is among the reasons
+    let change = best.change.as_ref().filter(|c| !c.moved.is_empty());
+    set.extend(change.map(|change| moves(context, change)));
+    let mut why: Vec<String> = best.reasons.iter().map(|r| harmless(&in_system(r, system))).collect();
+    if let Some(lost) = best.generation_lost_mw.filter(|mw| *mw > 0.0) {
+        why.push(format!("{lost:.1} MW not made"));
+    }
+    if best.parts.len() > 1 {
+        why.push(format!("weighted with the flow {}", temperature(best.by_flow_c, system)));
+    }
+    let mut out = labelled("No. 1", &format!("{}. Why: {}.", set.join("; "), why.join("; ")));
+    for unsure in &best.unsure {
+        let words = harmless(&in_system(&unsure_words(context.site(), unsure), system));
+        out.push_str(&labelled("Unsure", &words));
+    }
+    // broken limits are told in the list
+    for flag in flags(&best.warnings).filter(|p| p.kind != "limit") {
+        out.push_str(&labelled("Beware", &flag.advice(system)));
+    }
+    out
+}
+
+/// The answers beyond the list.
+pub(super) fn answers(context: &Context, answer: &RankAnswer) -> String {
+    let mut out = String::new();
+    if let Some([coldest, warmest]) = answer.attainable_c {
+        let unit = context.system.unit(Dimension::Temperature);
+        let warmest = temperature(warmest, context.system);
+        let mut words = format!("allowed mixes give {} to {warmest}", figure(coldest, unit, 1));
+        match answer.attainable_oxygen_mg_l {
+            Some([least, most]) => _ = write!(words, " and {least:.1} to {most:.1} mg/L oxygen"),
+            None => words.push_str(", oxygen unknown"),
+        }
+        out.push_str(&labelled("Range", &words));
+    }
+    if answer.trade.len() > 1 {
+        out.push_str(&labelled("Trade", &trade(context, &answer.trade)));
+    }
+    out.push_str(
+        &answer.split.as_ref().map_or_else(String::new, |s| labelled("Split", &split(context, answer, s))),
+    );
+    out.push_str(&answer.least.as_ref().map_or_else(String::new, |l| labelled("Least", &least(context, l))));
+    out.push_str(&answer.pocket.map_or_else(String::new, |p| labelled("More", &pocket(context, p))));
+    if !answer.lost.is_empty() && !answer.mixes.is_empty() {
+        out.push_str(&labelled("If lost", &lost(context, &answer.lost)));
+    }
+    out
+}
+
+/// Nearest to the preferred temperature first; of those that read alike in oxygen only the nearest.
+fn trade(context: &Context, trade: &[Trade]) -> String {
+    let mut words: Vec<(String, String)> = Vec::new();
+    for t in trade {
+        let air = oxygen(t.oxygen_mg_l);
+        if words.last().is_none_or(|last| last.1 != air) {
+            words.push((temperature(t.temperature_c, context.system), air));
+        }
+    }
+    let words: Vec<String> =
+        words.iter().map(|(t, o)| format!("{t} {}", o.trim_end_matches(" mg/L"))).collect();
+    let last = trade.last().map_or_else(String::new, |t| named(context, &[&t.gates]).join(", "));
+    format!("unbeaten in both: {} mg/L ({last})", words.join(", "))
+}
+
+fn split(context: &Context, answer: &RankAnswer, split: &PreferredSplit) -> String {
+    let (site, system) = (context.site(), context.system);
+    let [a, b] = split.between.map(|part| {
+        harmless(match part {
+            Part::Outlet(i) => &site.outlets[i].name,
+            Part::Well(i) => &site.wells[i].name,
+        })
+    });
+    let preferred = temperature(split.preferred_c, system);
+    let stands = |gates: &[Gate]| -> Vec<(usize, u64)> {
+        gates.iter().map(|g| (g.outlet, g.opening.to_bits())).collect()
+    };
+    let of_best = answer.mixes.first().is_some_and(|m| stands(&m.day.gates) == stands(&split.gates));
+    let rest = if of_best {
+        "the rest as no. 1".to_owned()
+    } else {
+        format!("of {}", named(context, &[&split.gates]).join(", "))
+    };
+    let one =
+        |r: &Root| format!("{a} {}, {b} {}", flow(r.flows_m3s[0], system), flow(r.flows_m3s[1], system));
+    let roots: Vec<String> = split.roots.iter().map(one).collect();
+    if roots.is_empty() {
+        let unit = system.unit(Dimension::Temperature);
+        let [coldest, warmest] = split.bracket_c;
+        let (coldest, warmest) = (figure(coldest, unit, 1), temperature(warmest, system));
+        return format!("no split of {a} and {b} gives {preferred}: {coldest} to {warmest}, {rest}");
+    }
+    format!("{preferred} with {}, {rest}", roots.join(", or "))
+}
+
+fn least(context: &Context, least: &Least) -> String {
+    let system = context.system;
+    if let Some(found) = least.flow_m3s {
+        let gates = named(context, &[&least.gates]).join(", ");
+        let end = if found > least.tried_m3s[0] { "in all" } else { "in all, the least tried," };
+        format!("{} {end} keeps every target: {gates}", flow(found, system))
+    } else {
+        let [low, high] = least.tried_m3s.map(|f| flow(f, system));
+        format!("no release tried, from {low} to {high}, keeps every target")
+    }
+}
+
+fn pocket(context: &Context, pocket: Pocket) -> String {
+    let system = context.system;
+    let (release, warmth) = (system.unit(Dimension::Flow), system.unit(Dimension::TemperatureDifference));
+    let more_m3s = release.to_si(if system == System::Us { POCKET.0 } else { POCKET.1 });
+    let by = warmth.from_si(pocket.c_per_m3s * more_m3s);
+    let way = if by < 0.0 { "colder" } else { "warmer" };
+    let words = if by.abs() < 0.05 { "less than 0.1".to_owned() } else { format!("{:.1}", by.abs()) };
+    format!(
+        "each {} more in proportion: {words} {} {way} ({}-{})",
+        flow(more_m3s, system),
+        warmth.symbol(),
+        figure(pocket.from_m3s, release, u8::from(system != System::Us)),
+        flow(pocket.to_m3s, system)
+    )
+}
+
+fn lost(context: &Context, lost: &[Lost]) -> String {
+    let one = |l: &Lost| {
+        let name = harmless(&context.site().outlets[l.outlet].name);
+        l.fallback.as_ref().map_or_else(
+            || format!("{name}: no allowed mix without it"),
+            |shown| {
+                format!(
+                    "{name}: {} ({}, {})",
+                    openings(context, shown).join(", "),
+                    temperature(shown.temperature_c, context.system),
+                    oxygen(shown.oxygen_mg_l)
+                )
+            },
+        )
+    };
+    lost.iter().map(one).collect::<Vec<_>>().join("; ")
+}

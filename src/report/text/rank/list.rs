@@ -1,0 +1,163 @@
+//! The ranked list, one line each, the setting now on top.
+
+use std::fmt::Write as _;
+
+use unicode_width::UnicodeWidthStr;
+
+use crate::mix::TargetStanding;
+use crate::problem::harmless;
+use crate::site::Site;
+use crate::target::Standing;
+use crate::tasks::Context;
+use crate::tasks::rank::{RankAnswer, Shown};
+use crate::units::{Dimension, System, figure, in_system};
+
+use crate::report::text::gates::openings;
+use crate::report::text::{WIDTH, fitted, wrapped};
+
+/// Cells of a line; the second, the gates, takes what the others leave.
+type Cells = [String; 7];
+/// What the columns hold.
+const CAPTION: &str = "10-90% and `in` (the share inside) are of our perturbed cases; moves, crew hours";
+/// Least width left to the gates.
+const GATES: usize = 16;
+
+/// ```text
+///  no gates (flows in cfs)          water F 10-90%  O2 stands  in moves
+/// now N3 100%, S3 100%              54.6 53.5-56.1 7.1 inside 55% 0
+///   1 N3 100%, S3 100%, Sluice 180  52.9 51.8-54.2 7.0 inside 58% 1 0.5
+/// ```
+pub(super) fn list(context: &Context, answer: &RankAnswer) -> String {
+    let system = context.system;
+    let heading = [
+        "no".to_owned(),
+        format!("gates (flows in {})", system.unit(Dimension::Flow).symbol()),
+        format!("water {} 10-90%", system.unit(Dimension::Temperature).symbol()),
+        "O2".to_owned(),
+        "stands".to_owned(),
+        "in".to_owned(),
+        "moves".to_owned(),
+    ];
+    let mut rows: Vec<(Cells, Vec<String>)> = vec![(heading, Vec::new())];
+    if let Some(now) = &answer.now {
+        rows.push((cells(context, "now", now), told(context, "now", now)));
+    }
+    for (at, shown) in answer.mixes.iter().enumerate() {
+        let number = (at + 1).to_string();
+        rows.push((cells(context, &number, shown), told(context, &format!("no. {number}"), shown)));
+    }
+    if rows.len() == 1 {
+        return String::new();
+    }
+    table(&rows) + &wrapped(CAPTION, 0)
+}
+
+fn cells(context: &Context, number: &str, shown: &Shown) -> Cells {
+    let (site, system) = (context.site(), context.system);
+    let unit = system.unit(Dimension::Temperature);
+    let mut water = figure(shown.temperature_c, unit, 1);
+    if let Some((low, high)) = shown.spread.band_c() {
+        let _ = write!(water, " {}-{}", figure(low, unit, 1), figure(high, unit, 1));
+    }
+    let share = shown.governing().and_then(|s| s.share_inside_both);
+    let moves = shown.change.as_ref().map(|c| {
+        let hours = in_hours(c.moves.crew_hours);
+        if hours.is_empty() { c.moves.count.to_string() } else { format!("{} {hours}", c.moves.count) }
+    });
+    [
+        number.to_owned(),
+        openings(context, shown).join(", "),
+        water,
+        shown.oxygen_mg_l.map_or_else(|| "?".to_owned(), |o| format!("{o:.1}")),
+        standing(site, &shown.targets, system),
+        share.map_or_else(|| "-".to_owned(), |s| format!("{:.0}%", 100.0 * s)),
+        moves.unwrap_or_else(|| "?".to_owned()),
+    ]
+}
+
+/// `0.5`, nothing for none.
+fn in_hours(hours: f64) -> String {
+    if hours > 0.0 { format!("{hours:.1}").trim_end_matches(".0").to_owned() } else { String::new() }
+}
+
+/// Limits that a mix computed in full breaks though the search took it for one that keeps them, or that the setting
+/// now breaks.
+fn told(context: &Context, whose: &str, shown: &Shown) -> Vec<String> {
+    let broken = shown.limits.iter().filter(|c| c.broken());
+    broken
+        .map(|c| {
+            format!("! {whose} misses {}", harmless(&in_system(&c.words(context.site()), context.system)))
+        })
+        .collect()
+}
+
+/// The largest misses of temperature and of oxygen over some targets, in capitals; `inside` where there is none.
+pub(super) fn standing(site: &Site, targets: &[TargetStanding], system: System) -> String {
+    let worst = |of: &dyn Fn(&TargetStanding) -> (Standing, Option<f64>)| {
+        targets
+            .iter()
+            .map(of)
+            .filter_map(|(standing, by)| Some((standing, by.filter(|b| *b > 0.0)?)))
+            .max_by(|a, b| a.1.total_cmp(&b.1))
+    };
+    let unit = system.unit(Dimension::TemperatureDifference);
+    let by = |amount: f64| if amount < 0.05 { "<0.1".to_owned() } else { format!("{amount:.1}") };
+    let mut out = Vec::new();
+    if let Some((standing, miss)) = worst(&|s| s.temperature) {
+        out.push(format!("{} {}", standing.word().to_uppercase(), by(unit.from_si(miss))));
+    }
+    if let Some((_, miss)) = worst(&|s| s.oxygen) {
+        out.push(format!("O2 BELOW {}", by(miss)));
+    }
+    if targets.iter().any(|s| s.unknown(site)) {
+        out.push("UNKNOWN".to_owned());
+    }
+    match (out.is_empty(), targets.is_empty()) {
+        (true, true) => "no target".to_owned(),
+        (true, false) => "inside".to_owned(),
+        _ => out.join(", "),
+    }
+}
+
+/// Rows set out in columns, gates wrapped at their commas; what is told of a row follows it.
+fn table(rows: &[(Cells, Vec<String>)]) -> String {
+    let width = |column: usize| rows.iter().map(|r| r.0[column].width()).max().unwrap_or(0);
+    let widths: [usize; 7] = std::array::from_fn(width);
+    let others: usize = widths.iter().sum::<usize>() - widths[1] + widths.len() - 1;
+    let gates = widths[1].min(WIDTH.saturating_sub(others).max(GATES));
+    let mut out = String::new();
+    for (cells, told) in rows {
+        let [number, set, water, oxygen, standing, cases, moves] = cells;
+        let mut lines = broken_at_commas(set, gates).into_iter();
+        let first = lines.next().unwrap_or_default();
+        let [w_number, _, w_water, w_oxygen, w_standing, w_cases, _] = widths;
+        let line = format!(
+            "{number:>w_number$} {} {water:<w_water$} {oxygen:>w_oxygen$} {} {cases:>w_cases$} {moves}",
+            fitted(&first, gates),
+            fitted(standing, w_standing),
+        );
+        let _ = writeln!(out, "{}", line.trim_end());
+        for more in lines {
+            let _ = writeln!(out, "{:>w_number$}   {more}", "");
+        }
+        for words in told {
+            out.push_str(&wrapped(&format!("{:>w_number$} {words}", ""), w_number + 3));
+        }
+    }
+    out
+}
+
+/// A list cut after commas so that its lines fit.
+fn broken_at_commas(list: &str, width: usize) -> Vec<String> {
+    let mut out = vec![String::new()];
+    for piece in list.split_inclusive(", ") {
+        let line = out.len() - 1;
+        let room = if line == 0 { width } else { width.saturating_sub(2) };
+        if !out[line].is_empty() && out[line].width() + piece.trim_end().width() > room {
+            out.push(piece.to_owned());
+        } else {
+            out[line].push_str(piece);
+        }
+    }
+    out.into_iter().map(|l| l.trim_end().to_owned()).collect()
+}

@@ -1,0 +1,170 @@
+//! Which mixes fit, on one screen: what was asked, the list, why no. 1, and the answers beyond it.
+
+mod below;
+mod list;
+mod refused;
+
+use std::fmt::Write as _;
+
+use crate::problem::{Problem, Weight, harmless};
+use crate::rank::Criterion;
+use crate::target::Target;
+use crate::tasks::Context;
+use crate::tasks::rank::{NothingFits, RankAnswer, Shown};
+use crate::units::{Dimension, System, show};
+
+use super::gates::openings;
+use super::mix::range;
+use super::{flow, labelled, oxygen, temperature, wrapped};
+
+/// What was asked, the list and what follows from it.
+pub(super) fn body(context: &Context, answer: &RankAnswer) -> String {
+    let (site, system) = (context.site(), context.system);
+    let mut out = labelled("Release", &asked(context, answer));
+    let date = context.on.date_naive();
+    let valid: Vec<&Target> = site.targets.iter().filter(|t| t.span.contains(date)).collect();
+    for rule in &valid {
+        out.push_str(&labelled("Target", &format!("{}: {}", harmless(&rule.name), range(rule, system))));
+    }
+    if valid.is_empty() {
+        out.push_str(&labelled("Target", "none is valid on this date"));
+    }
+    out.push('\n');
+    if let Some(words) = nothing_fits(context, answer) {
+        out.push_str(&wrapped(&words, 0));
+    }
+    out.push_str(&list::list(context, answer));
+    if let Some(best) = answer.mixes.first() {
+        out.push_str(&below::best(context, best));
+    }
+    let (answers, rejected) = (below::answers(context, answer), refused::rejected(context, answer));
+    // where nothing fits, what stands in the way comes first
+    let [first, second] = if answer.mixes.is_empty() { [rejected, answers] } else { [answers, rejected] };
+    out.push_str(&first);
+    out.push_str(&second);
+    out.push_str(&examined(answer, system));
+    for note in answer.notes.iter().chain(flags(&context.profile.flags)) {
+        out.push_str(&labelled("Note", &note.advice(system)));
+    }
+    if let Some(best) = answer.mixes.first() {
+        out.push_str(&not_checked(context, best));
+    }
+    out
+}
+
+/// What to beware of, without what was merely assumed.
+fn flags(problems: &[Problem]) -> impl Iterator<Item = &Problem> {
+    problems.iter().filter(|p| p.weight == Weight::Flag)
+}
+
+/// Limits of the best mix that nobody gave or that what is known does not reach; which gates they are missing for only
+/// where that is not all of its open gates.
+fn not_checked(context: &Context, best: &Shown) -> String {
+    let mut open: Vec<&str> =
+        best.day.gates.iter().map(|g| context.site().outlets[g.outlet].name.as_str()).collect();
+    open.sort_unstable();
+    let all = format!(" of {}", open.join(", "));
+    let told: Vec<&str> =
+        best.not_checked.iter().map(|words| words.strip_suffix(all.as_str()).unwrap_or(words)).collect();
+    if told.is_empty() {
+        return String::new();
+    }
+    wrapped(&format!("Not checked: {}", harmless(&told.join("; "))), 2)
+}
+
+fn asked(context: &Context, answer: &RankAnswer) -> String {
+    let system = context.system;
+    let mut out = match &answer.blocks[..] {
+        [(_, total)] => flow(*total, system),
+        blocks => {
+            let one = |(i, &(share, total)): (usize, &(f64, f64))| {
+                format!("{} {} for {:.0} h", block_name(context, i), flow(total, system), 24.0 * share)
+            };
+            blocks.iter().enumerate().map(one).collect::<Vec<_>>().join(", ")
+        }
+    };
+    let _ = write!(
+        out,
+        " ({}), split in steps of {:.3}",
+        answer.release_from.words(),
+        100.0 / answer.steps as f64
+    );
+    let mut out = out.trim_end_matches('0').trim_end_matches('.').to_owned() + " %";
+    if answer.order != Criterion::NAMES.map(|c| c.1) {
+        let by: Vec<&str> = answer.order.iter().map(|c| c.name()).collect();
+        let _ = write!(out, "; ordered by {}", by.join(", "));
+    }
+    if !answer.without.is_empty() {
+        let names: Vec<&str> =
+            answer.without.iter().map(|&o| context.site().outlets[o].name.as_str()).collect();
+        let _ = write!(out, "; without {}", harmless(&names.join(", ")));
+    }
+    out
+}
+
+fn block_name(context: &Context, index: usize) -> String {
+    context.site().blocks.get(index).map_or_else(String::new, |b| harmless(&b.name))
+}
+
+/// Plainly, where no mix is allowed or none reaches the targets.
+fn nothing_fits(context: &Context, answer: &RankAnswer) -> Option<String> {
+    let why = answer.nothing_fits()?;
+    let words = match (why, &answer.nearest) {
+        (NothingFits::NoneReaches, Some(nearest)) => {
+            format!("No mix examined reaches every target. Nearest: {}", nearly(context, nearest))
+        }
+        _ => "No mix is allowed: every one examined breaks a limit. What rejects them, with its smallest miss, stands below."
+            .into(),
+    };
+    Some(words)
+}
+
+/// A mix that misses targets, and by how much.
+fn nearly(context: &Context, nearest: &Shown) -> String {
+    let (site, system) = (context.site(), context.system);
+    let mut misses = Vec::new();
+    for standing in nearest.targets.iter().filter(|s| s.missed() || s.unknown(site)) {
+        let name = harmless(&site.targets[standing.target].name);
+        let words = list::standing(site, std::slice::from_ref(standing), system);
+        misses.push(format!("{name}: {words}"));
+    }
+    format!(
+        "{}, {}, oxygen {}: {}",
+        openings(context, nearest).join(", "),
+        temperature(nearest.temperature_c, system),
+        oxygen(nearest.oxygen_mg_l),
+        misses.join("; ")
+    )
+}
+
+fn examined(answer: &RankAnswer, system: System) -> String {
+    let r = &answer.ranking;
+    let mut words = format!(
+        "{}: {} judged, {} skipped with proof; {} allowed",
+        if r.examined == 1 { "1 mix".to_owned() } else { grouped(r.examined) + " mixes" },
+        grouped(r.judged),
+        grouped(r.skipped),
+        grouped(r.allowed)
+    );
+    if !answer.mixes.is_empty() {
+        let apart = show(answer.apart.0, Dimension::TemperatureDifference, system, 3);
+        let _ = write!(words, "; full computation differs by up to {apart}");
+        if let Some(oxygen) = answer.apart.1 {
+            let _ = write!(words, ", {oxygen:.3} mg/L");
+        }
+    }
+    labelled("Examined", &words)
+}
+
+/// `77,991,781`.
+fn grouped(count: u64) -> String {
+    let digits = count.to_string();
+    let mut out = String::with_capacity(digits.len() + digits.len() / 3);
+    for (at, c) in digits.chars().enumerate() {
+        if at > 0 && (digits.len() - at).is_multiple_of(3) {
+            out.push(',');
+        }
+        out.push(c);
+    }
+    out
+}
