@@ -138,7 +138,11 @@ impl Curve {
 
     /// The two knots about a flow and the share of the way between them.
     #[inline]
-    #[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "no less than zero, and capped")]
+    #[expect(
+        clippy::cast_possible_truncation,
+        clippy::cast_sign_loss,
+        reason = "no less than zero, and capped"
+    )]
     fn place(&self, flow_m3s: f64) -> (&Knot, &Knot, f64) {
         let root = flow_m3s.max(0.0).sqrt();
         let step = ((root * self.steps_per_root) as usize).min(self.starts.len() - 1);

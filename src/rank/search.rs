@@ -250,7 +250,13 @@ impl<'a> Walk<'a> {
     /// Judges the head with every row of a block: first, whether any of them can be the best of anything; then what
     /// can be computed side by side; then what each mix is the best of.
     #[inline]
-    fn judge<const B: usize, const S: usize>(&self, block: &Block, head: &Sums, days: &mut Days<ROWS>, found: &mut Found) {
+    fn judge<const B: usize, const S: usize>(
+        &self,
+        block: &Block,
+        head: &Sums,
+        days: &mut Days<ROWS>,
+        found: &mut Found,
+    ) {
         let Task { levels, goal, rules, .. } = self.task;
         let unknown = head.unknown || block.any_unknown();
         let may_skip = rules.is_empty() && !unknown;

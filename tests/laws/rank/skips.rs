@@ -46,10 +46,11 @@ outlets:
     for (well, offset) in [("North", 0.0), ("South", 4.0)] {
         for i in 0..5 {
             let centre = 66.0 - 11.0 * f64::from(i) - offset;
-            text += &format!(
+            let line = format!(
                 "  - {{ name: {}{i}, well: {well}, centre: {centre}, height: 4, width: 3, loss: 1.5, positions: [0, 50, 100], min_submergence: 3 }}\n",
                 &well[..1]
             );
+            text.push_str(&line);
         }
     }
     site(&text, "site.yaml").site.unwrap()
@@ -110,6 +111,7 @@ fn any_mix(works: &Works, dice: &mut Dice) -> Number {
 }
 
 /// The number of a mix of a ranking, by what is asked for in the first part of the day.
+#[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "a whole number from 0")]
 fn number_of(works: &Works, mix: &Ranked) -> Number {
     let asked = &mix.asked[0];
     let number = works.parts.iter().map(|part| {
