@@ -121,13 +121,7 @@ pub(super) struct Days<const N: usize> {
 impl<const N: usize> Default for Days<N> {
     fn default() -> Self {
         let none = [0.0; N];
-        Self {
-            low_c: [none; 3],
-            high_c: [none; 3],
-            oxygen_mg_l: [none; 2],
-            cold_share: none,
-            effort: none,
-        }
+        Self { low_c: [none; 3], high_c: [none; 3], oxygen_mg_l: [none; 2], cold_share: none, effort: none }
     }
 }
 

@@ -171,7 +171,14 @@ impl<'a> Walk<'a> {
     }
 
     /// Goes through the choices of the head from `depth` on, `left` steps of the release still to be given.
-    fn deeper(&self, depth: usize, left: usize, stack: &mut [Sums<'a>], days: &mut Days<ROWS>, found: &mut Found) {
+    fn deeper(
+        &self,
+        depth: usize,
+        left: usize,
+        stack: &mut [Sums<'a>],
+        days: &mut Days<ROWS>,
+        found: &mut Found,
+    ) {
         if self.completions[depth][left] == 0 {
             return;
         }
@@ -264,7 +271,10 @@ impl<'a> Walk<'a> {
         let Task { levels, goal, rules, .. } = self.task;
         let unknown = head.unknown || block.any_unknown();
         let may_skip = rules.is_empty() && !unknown;
-        if may_skip && let Some((far, most_mg_l)) = self.behind::<B, S>(block, at_hand, &found.best[head.idea..], found) {
+        if may_skip
+            && let Some((far, most_mg_l)) =
+                self.behind::<B, S>(block, at_hand, &found.best[head.idea..], found)
+        {
             // first all rows as one, then one by one
             let beaten = found.beaten_in_both(far, most_mg_l) || {
                 waters(days, block, at_hand);

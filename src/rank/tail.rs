@@ -98,8 +98,7 @@ impl Block {
         let mut days = Days::<1>::default();
         let (mut least_mg_l, mut mean_flow) = (0.0, 0.0);
         for b in 0..B {
-            let [flow, heat, oxygen] =
-                [0, 1, 2].map(|i| self.water[b][i].map(|end| head.water[b][i] + end));
+            let [flow, heat, oxygen] = [0, 1, 2].map(|i| self.water[b][i].map(|end| head.water[b][i] + end));
             let per = flow.map(|q| 1.0 / q);
             // heat may lie below zero, so either end of the flow can make the least and the greatest
             let low = (heat[0] * per[0]).min(heat[0] * per[1]);
@@ -155,11 +154,7 @@ impl Tail {
 /// Fills in temperature and oxygen of a block's rows, with what the head adds to each; gives the mean flow of each, of
 /// a steady day one over it.
 #[inline]
-pub(super) fn waters<const B: usize>(
-    days: &mut Days<ROWS>,
-    block: &Block,
-    head: &Head<B>,
-) -> Column {
+pub(super) fn waters<const B: usize>(days: &mut Days<ROWS>, block: &Block, head: &Head<B>) -> Column {
     let mut flows = [0.0; ROWS];
     for b in 0..B {
         let [flow, heat, oxygen] = [3 * b, 3 * b + 1, 3 * b + 2].map(|lane| &block.lanes[lane]);

@@ -35,7 +35,10 @@ pub(super) struct Trial {
     pub(super) broken: Vec<Check>,
 }
 
+/// Where a sink draws.
 type Place = (u64, bool, u64);
+/// Layers that sinks draw, by place and flow.
+type Reaches = HashMap<(Place, u64), Rc<Vec<Check>>>;
 
 /// What is asked, with everything taken apart.
 pub(super) struct Works<'a> {
@@ -49,7 +52,7 @@ pub(super) struct Works<'a> {
     most_m3s: f64,
     curves: RefCell<HashMap<Place, Rc<Curve>>>,
     trials: RefCell<HashMap<(usize, usize, usize), Rc<Trial>>>,
-    reaches: RefCell<HashMap<(Place, u64), Rc<Vec<Check>>>>,
+    reaches: RefCell<Reaches>,
     kept: RefCell<HashMap<(Place, usize), f64>>,
 }
 
