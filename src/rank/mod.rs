@@ -20,7 +20,7 @@ mod whole;
 use chrono::NaiveDate;
 
 use crate::intake;
-use crate::mix::limits::{self, Before, Check, Of, Rule};
+use crate::mix::limits::{self, Before, Of, Rule};
 use crate::mix::{Setting, groups};
 use crate::problem::Problem;
 use crate::profile::Profile;

@@ -50,6 +50,9 @@ pub struct Sink {
     pub opening: Opening,
 }
 
+/// Less than this is no flow, m3/s (choice): its square would be lost in the search for a limit.
+const LEAST_FLOW_M3S: f64 = 1e-60;
+
 /// The zone of one sink.
 ///
 /// # Units
@@ -63,7 +66,7 @@ pub struct Sink {
 /// (recalled); see `docs/methods.md`, section 3.
 pub fn zone(column: &Column, sink: &Sink, zone_factor: f64) -> Option<Zone> {
     let inside = (column.bed_m()..=column.surface_m()).contains(&sink.centre_m);
-    if !inside || sink.flow_m3s <= 0.0 {
+    if !inside || sink.flow_m3s < LEAST_FLOW_M3S {
         return None;
     }
     let flow = sink.flow_m3s * zone_factor.powi(3);

@@ -7,7 +7,7 @@ use gatemix::profile::{Column, OxygenSample, Sample};
 use gatemix::withdrawal::{End, Sink, Zone, boundary_factor, zone};
 use proptest::prelude::*;
 
-use crate::columns::{Pool, angle, any_water, config, flow, fresh, given, port, share, slack, stable};
+use crate::columns::{Pool, angle, any_water, config, flow, fresh, given, port, share, slack, stable, worked};
 
 const GRAVITY_M_S2: f64 = 9.80665;
 
@@ -189,4 +189,13 @@ fn law_no_zone_outside_the_water_or_without_flow() {
     };
     assert!(none(-0.1, 10.0) && none(60.1, 10.0) && none(30.0, 0.0) && none(30.0, -1.0));
     assert!(!none(0.0, 10.0) && !none(60.0, 10.0));
+}
+
+#[test]
+fn scenario_a_flow_too_small_for_a_figure_has_no_zone() {
+    let column = worked().column();
+    for flow_m3s in [0.0, 1e-304, 5e-324] {
+        assert!(zone(&column, &port(30.0, flow_m3s, PI), 1.0).is_none());
+    }
+    assert!(zone(&column, &port(30.0, 1e-30, PI), 1.0).is_some());
 }
