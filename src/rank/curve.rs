@@ -14,8 +14,13 @@ const APART: f64 = 5e-4;
 const APART_SHARE: f64 = 5e-3;
 /// The same for dissolved and suspended solids, as a share of the value (choice).
 const APART_SOLIDS: f64 = 1e-3;
+/// Where the table is tried beside half-way, as a share of a step (choice).
+const BESIDE: f64 = 0.3;
 /// Steps of the first cut, even in the root of the flow (choice).
 const FIRST: u32 = 16;
+/// The first step is cut in halves towards no flow this often (choice): a trickle draws otherwise than a stream, and
+/// half-way between the two need not show it.
+const TRICKLES: i32 = 5;
 /// A step is halved this often at most (choice): where the oxygen becomes unknown the table jumps.
 const HALVINGS: u32 = 10;
 /// Least flow of the table as a share of its greatest (choice); below it the water is that of this flow.
@@ -86,6 +91,7 @@ impl Curve {
         };
         let top = most_m3s.sqrt();
         let mut roots: Vec<f64> = (1..=FIRST).map(|i| top * f64::from(i) / f64::from(FIRST)).collect();
+        roots.extend((1..=TRICKLES).map(|i| top / f64::from(FIRST) * 0.5_f64.powi(i)));
         roots.push(top * LEAST.sqrt());
         let (last, widest) = solve(top)?;
         let meets = [widest.lower, widest.upper].into_iter().filter_map(|side| side.boundary_flow_m3s);
@@ -132,7 +138,11 @@ impl Curve {
 
     /// The two knots about a flow and the share of the way between them.
     #[inline]
-    #[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "no less than zero, and capped")]
+    #[expect(
+        clippy::cast_possible_truncation,
+        clippy::cast_sign_loss,
+        reason = "no less than zero, and capped"
+    )]
     fn place(&self, flow_m3s: f64) -> (&Knot, &Knot, f64) {
         let root = flow_m3s.max(0.0).sqrt();
         let step = ((root * self.steps_per_root) as usize).min(self.starts.len() - 1);
@@ -150,19 +160,22 @@ impl Curve {
     }
 }
 
-/// Adds knots between two until a straight line between neighbours is near enough.
+/// Adds knots between two until a straight line between neighbours is near enough half-way and beside it: what bends
+/// evenly about the middle does not show there.
 fn refine(solve: &impl Fn(f64) -> Option<Knot>, a: Knot, b: Knot, halvings: u32, knots: &mut Vec<Knot>) {
-    let middle = 0.5 * (a.root + b.root);
-    let (true, Some(knot)) = (halvings > 0, solve(middle)) else { return };
-    let off = |i: usize| (knot.values[i] - 0.5 * (a.values[i] + b.values[i])).abs();
-    let known = [a, knot, b].map(|k| k.oxygen_known);
-    let near = off(0) < APART
-        && off(2) < APART_SHARE
-        && off(3) < APART_SOLIDS * (0.1 + knot.values[3])
-        && off(4) < APART_SOLIDS * (1.0 + knot.values[4])
-        && known.iter().all(|&k| k == known[0])
-        && (!known[0] || off(1) < APART);
-    if near {
+    let between = |share: f64| solve(a.root + share * (b.root - a.root));
+    let (true, Some(knot)) = (halvings > 0, between(0.5)) else { return };
+    let near = |share: f64, knot: Knot| {
+        let off = |i: usize| (knot.values[i] - a.values[i] - share * (b.values[i] - a.values[i])).abs();
+        let known = [a, knot, b].map(|k| k.oxygen_known);
+        off(0) < APART
+            && off(2) < APART_SHARE
+            && off(3) < APART_SOLIDS * (0.1 + knot.values[3])
+            && off(4) < APART_SOLIDS * (1.0 + knot.values[4])
+            && known.iter().all(|&k| k == known[0])
+            && (!known[0] || off(1) < APART)
+    };
+    if near(0.5, knot) && between(BESIDE).is_none_or(|knot| near(BESIDE, knot)) {
         return;
     }
     refine(solve, a, knot, halvings - 1, knots);

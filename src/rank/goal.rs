@@ -121,13 +121,7 @@ pub(super) struct Days<const N: usize> {
 impl<const N: usize> Default for Days<N> {
     fn default() -> Self {
         let none = [0.0; N];
-        Self {
-            low_c: [none; 3],
-            high_c: [none; 3],
-            oxygen_mg_l: [none; 2],
-            cold_share: none,
-            effort: none,
-        }
+        Self { low_c: [none; 3], high_c: [none; 3], oxygen_mg_l: [none; 2], cold_share: none, effort: none }
     }
 }
 
@@ -178,12 +172,13 @@ impl Goal {
         }
     }
 
-    /// Least distance from the preferred temperature, C; where no rule prefers one, from the range. `statistics` is 1
-    /// for steady days, else 3.
+    /// Least distance from the preferred temperature, C; where no rule prefers one, from the range. `S` statistics
+    /// count: 1 for steady days, else 3.
     #[inline]
-    pub(super) fn distances_c<const N: usize>(&self, days: &Days<N>, statistics: usize) -> [f64; N] {
+    pub(super) fn distances_c<const N: usize, const S: usize>(&self, days: &Days<N>) -> [f64; N] {
         let mut out = [0.0; N];
-        for (w, (low, high)) in self.wanted.iter().zip(days.low_c.iter().zip(&days.high_c)).take(statistics) {
+        for s in 0..S {
+            let (w, low, high) = (&self.wanted[s], &days.low_c[s], &days.high_c[s]);
             for i in 0..N {
                 out[i] = most(most(out[i], low[i] - w.preferred.0), w.preferred.1 - high[i]);
             }
@@ -194,15 +189,14 @@ impl Goal {
     /// The keys by which mixes are ordered, whole numbers: the smaller the better; of several mixes none has a smaller
     /// one. Every line goes over all days, so that they are computed side by side.
     #[inline]
-    pub(super) fn keys<const N: usize>(
+    pub(super) fn keys<const N: usize, const S: usize>(
         &self,
         days: &Days<N>,
-        statistics: usize,
         distances_c: &[f64; N],
     ) -> [f64; N] {
         let (mut range, mut short) = ([0.0; N], [0.0; N]);
-        for (s, w) in self.wanted.iter().enumerate().take(statistics) {
-            let (low, high) = (&days.low_c[s], &days.high_c[s]);
+        for s in 0..S {
+            let (w, low, high) = (&self.wanted[s], &days.low_c[s], &days.high_c[s]);
             let oxygen = &days.oxygen_mg_l[usize::from(s > 0)];
             for i in 0..N {
                 range[i] = most(most(range[i], w.low - high[i]), low[i] - w.high);
@@ -220,28 +214,27 @@ impl Goal {
             let missed = if range[i] > ROUND_OFF { 1.0 } else { 0.0 };
             key[i] += w_range * (missed + up_to(whole(range[i] * self.per_c - ROUND_OFF), STEPS - 2.0));
         }
-        for i in 0..N {
-            key[i] += w_far * up_to(whole(distances_c[i] * self.per_c + ROUND_OFF), STEPS - 1.0);
+        for (key, far) in key.iter_mut().zip(distances_c) {
+            *key += w_far * up_to(whole(far * self.per_c + ROUND_OFF), STEPS - 1.0);
         }
-        for i in 0..N {
-            key[i] += w_cold * up_to(whole(days.cold_share[i] * self.per_share + ROUND_OFF), COLD_STEPS - 1.0);
+        for (key, cold) in key.iter_mut().zip(&days.cold_share) {
+            *key += w_cold * up_to(whole(cold * self.per_share + ROUND_OFF), COLD_STEPS - 1.0);
         }
-        for i in 0..N {
-            key[i] += w_moves * up_to(days.effort[i], MOVE_STEPS * MOVE_STEPS - 1.0);
+        for (key, effort) in key.iter_mut().zip(&days.effort) {
+            *key += w_moves * up_to(*effort, MOVE_STEPS * MOVE_STEPS - 1.0);
         }
         key
     }
 
     /// The keys of the same days with oxygen unknown: after oxygen known to keep the floor, before any that does not.
-    pub(super) fn keys_unknown<const N: usize>(
+    pub(super) fn keys_unknown<const N: usize, const S: usize>(
         &self,
         days: &Days<N>,
-        statistics: usize,
         distances_c: &[f64; N],
     ) -> [f64; N] {
         let told = Days { oxygen_mg_l: [[f64::INFINITY; N]; 2], ..days.clone() };
         let unknown = if self.has_floor { self.weights[0] } else { 0.0 };
-        self.keys(&told, statistics, distances_c).map(|key| key + unknown)
+        self.keys::<N, S>(&told, distances_c).map(|key| key + unknown)
     }
 }
 

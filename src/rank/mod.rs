@@ -23,7 +23,6 @@ use crate::mix::{Setting, groups};
 use crate::problem::Problem;
 use crate::profile::Profile;
 use crate::site::Site;
-use crate::units::say;
 use crate::withdrawal::{Opening, Sink, zone};
 
 use arrange::ways;
@@ -35,7 +34,6 @@ use ranking::Decoder;
 use search::{Task, WholeRule};
 use seats::Level;
 use tries::Kitchen;
-use units::Unit;
 
 pub use curve::{Curve, Curves, Water};
 pub use goal::Criterion;
@@ -92,11 +90,18 @@ pub fn rank(question: &Question, progress: Progress) -> Result<Ranking, Stopped>
     let seats =
         seats::levels(site, &groups, &units, profile.pool_m, &mut curves).map_err(Stopped::Refused)?;
     let alone = tries::alone(site, &units, &mut curves);
-    let flows_m3s = shared_out(question, &units).map_err(Stopped::Refused)?;
+    let spilt: f64 = units.iter().filter_map(|u| u.spills_m3s).sum();
+    let mut flows_m3s = [0.0; MOST_BLOCKS];
+    for (flow, block) in flows_m3s.iter_mut().zip(question.blocks) {
+        *flow = (block.1 - spilt).max(0.0);
+    }
+    // where what spills by itself is all that is wanted, nothing is left to share out
+    let nothing_left = flows_m3s.iter().all(|flow| *flow <= 0.0);
+    let question = &Question { steps: if nothing_left { 0 } else { question.steps }, ..*question };
     // leaks leave the dam beside the release
     let direct = site.outlets.iter().filter(|o| o.well.is_none());
     let leaks: f64 = direct.map(|o| intake::leak_m3s(o, profile.pool_m - o.centre_m, 0.5)).sum();
-    let most_m3s = question.blocks.iter().map(|b| b.1).fold(0.0, f64::max) + leaks;
+    let most_m3s = question.blocks.iter().map(|b| b.1).fold(spilt, f64::max) + leaks;
     curves.solve(&profile.column, most_m3s, site.cold_water_c.first().copied());
     let slots = slots(question, &seats, &curves, most_m3s);
     let weights: Vec<f64> = question.blocks.iter().map(|b| b.0).collect();
@@ -162,28 +167,6 @@ pub fn rank(question: &Question, progress: Progress) -> Result<Ranking, Stopped>
     ranking.rejected.extend(hopeless);
     ranking.rejected.sort_by_key(|r| (r.check.rule, r.check.of, r.check.item));
     Ok(ranking)
-}
-
-/// What is left to share out in each part of the day beside what spills by itself, m3/s.
-///
-/// # Errors
-/// Where nothing is left.
-fn shared_out(question: &Question, units: &[Unit]) -> Result<[f64; MOST_BLOCKS], Problem> {
-    let spilling: Vec<&Unit> = units.iter().filter(|u| u.spills_m3s.is_some()).collect();
-    let spilt: f64 = spilling.iter().filter_map(|u| u.spills_m3s).sum();
-    let mut flows_m3s = [0.0; MOST_BLOCKS];
-    for (flow, &(_, asked)) in flows_m3s.iter_mut().zip(question.blocks) {
-        *flow = asked - spilt;
-        if *flow <= 0.0 {
-            let names: Vec<&str> =
-                spilling.iter().map(|u| question.site.outlets[u.outlets[0]].name.as_str()).collect();
-            let (asked, spilt) = (say::m3s(asked, 2), say::m3s(spilt, 2));
-            let words =
-                format!("{} spills {spilt} by itself, a release of {asked} leaves nothing", names.join(", "));
-            return Err(Problem::refused("spills", words, "ask for more than spills, or draw the pool down"));
-        }
-    }
-    Ok(flows_m3s)
 }
 
 /// What was found, as mixes with names.

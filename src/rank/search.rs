@@ -15,17 +15,17 @@ use rayon::prelude::*;
 
 use super::arrange::{arranged, ways};
 use super::choices::{Choice, Choices, Levels, MOST_BLOCKS, Part};
-use super::found::{Found, lower};
+use super::found::{At, Found, lower};
 use super::goal::{Days, Goal};
-use super::tail::{Block, ROWS, Tail, fill, greatest, least};
+use super::tail::{Block, Head, ROWS, Tail, fill, greatest, least, waters};
 
 /// A rule is kept when it is missed by less than this share of its bound: round-off.
 const ROUND_OFF: f64 = 1e-9;
 /// What spans are eased by, C, mg/L and shares (choice: far above round-off, far below any bin).
 const SAFE: f64 = 1e-9;
-/// The coarser search takes at most this many steps (choice).
-const COARSE_STEPS: usize = 10;
-/// A coarser search is made when there are more mixes than this (choice).
+/// Coarser searches take at most these many steps, one after the other (choice).
+const COARSE_STEPS: [usize; 1] = [10];
+/// Coarser searches are made when there are more mixes than this (choice).
 const WORTH_IT: u64 = 200_000;
 /// The choices of the first part are gone through in this many lots (choice): enough for many cores, few enough that
 /// each can keep its own findings.
@@ -73,21 +73,19 @@ pub(super) struct Task<'a> {
 
 /// Judges every mix of a task. `None` when the caller stopped it.
 pub(super) fn search(task: &Task) -> Option<Found> {
-    let nothing = Found::nothing(task.ideas, task.rules.len());
+    let mut to_beat = Found::nothing(task.ideas, task.rules.len());
     let counts: Vec<Vec<u64>> = task.units.iter().map(Choices::counts).collect();
     let mixes = ways(&counts, task.steps)[task.steps];
-    let coarse = (task.steps / COARSE_STEPS..task.steps)
-        .find(|every| *every > 1 && task.steps.is_multiple_of(*every))
-        .filter(|_| mixes > WORTH_IT && task.rules.is_empty());
-    let to_beat = match coarse {
-        None => nothing,
-        Some(every) => {
+    if mixes > WORTH_IT && task.rules.is_empty() {
+        for most in COARSE_STEPS {
+            let every = (2..task.steps).find(|e| task.steps.is_multiple_of(*e) && task.steps / e <= most);
+            let Some(every) = every else { continue };
             let thinned: Vec<Choices> = task.units.iter().map(|u| u.every(every)).collect();
             // told nothing of how far it is: it is short
             let quiet = |_: f64| (task.progress)(0.0);
-            walked(&Task { units: &thinned, progress: &quiet, ..*task }, &nothing)?.to_beat()
+            to_beat = walked(&Task { units: &thinned, progress: &quiet, ..*task }, &to_beat)?.to_beat();
         }
-    };
+    }
     walked(task, &to_beat)
 }
 
@@ -173,7 +171,14 @@ impl<'a> Walk<'a> {
     }
 
     /// Goes through the choices of the head from `depth` on, `left` steps of the release still to be given.
-    fn deeper(&self, depth: usize, left: usize, stack: &mut [Sums<'a>], days: &mut Days<ROWS>, found: &mut Found) {
+    fn deeper(
+        &self,
+        depth: usize,
+        left: usize,
+        stack: &mut [Sums<'a>],
+        days: &mut Days<ROWS>,
+        found: &mut Found,
+    ) {
         if self.completions[depth][left] == 0 {
             return;
         }
@@ -197,13 +202,25 @@ impl<'a> Walk<'a> {
             }
         }
         head.unknown |= self.task.levels.join(&head.parts, head.shared, &mut head.lanes);
+        match self.task.levels.lanes.blocks {
+            1 => self.judge_all::<1, 1>(left, head, days, found),
+            2 => self.judge_all::<2, 3>(left, head, days, found),
+            3 => self.judge_all::<3, 3>(left, head, days, found),
+            _ => self.judge_all::<MOST_BLOCKS, 3>(left, head, days, found),
+        }
+    }
+
+    /// Judges the head with every block that takes what is left; `B` parts of the day, `S` statistics.
+    fn judge_all<const B: usize, const S: usize>(
+        &self,
+        left: usize,
+        sums: &Sums,
+        days: &mut Days<ROWS>,
+        found: &mut Found,
+    ) {
+        let head = Head::<B>::of(&sums.lanes, self.task.levels);
         for block in &self.tail.by_share[left] {
-            match self.task.levels.lanes.blocks {
-                1 => self.judge::<1>(block, head, days, found),
-                2 => self.judge::<2>(block, head, days, found),
-                3 => self.judge::<3>(block, head, days, found),
-                _ => self.judge::<MOST_BLOCKS>(block, head, days, found),
-            }
+            self.judge::<B, S>(block, sums, &head, days, found);
         }
     }
 
@@ -243,20 +260,38 @@ impl<'a> Walk<'a> {
     /// Judges the head with every row of a block: first, whether any of them can be the best of anything; then what
     /// can be computed side by side; then what each mix is the best of.
     #[inline]
-    fn judge<const B: usize>(&self, block: &Block, head: &Sums, days: &mut Days<ROWS>, found: &mut Found) {
+    fn judge<const B: usize, const S: usize>(
+        &self,
+        block: &Block,
+        head: &Sums,
+        at_hand: &Head<B>,
+        days: &mut Days<ROWS>,
+        found: &mut Found,
+    ) {
         let Task { levels, goal, rules, .. } = self.task;
-        let statistics = if B == 1 { 1 } else { 3 };
         let unknown = head.unknown || block.any_unknown();
-        if rules.is_empty() && !unknown && self.beaten::<B>(block, head, found) {
-            found.beaten += block.rows as u64;
-            return;
+        let may_skip = rules.is_empty() && !unknown;
+        if may_skip
+            && let Some((far, most_mg_l)) =
+                self.behind::<B, S>(block, at_hand, &found.best[head.idea..], found)
+        {
+            // first all rows as one, then one by one
+            let beaten = found.beaten_in_both(far, most_mg_l) || {
+                waters(days, block, at_hand);
+                let (far, o) = (goal.distances_c::<ROWS, S>(days), &days.oxygen_mg_l[0]);
+                (0..block.rows).all(|i| found.beaten_in_both(far[i], o[i]))
+            };
+            if beaten {
+                found.beaten += block.rows as u64;
+                return;
+            }
         }
         found.judged += block.rows as u64;
-        fill::<B>(days, block, &head.lanes, levels);
-        let far = goal.distances_c(days, statistics);
-        let mut key = goal.keys(days, statistics, &far);
+        fill(days, block, at_hand, levels.lanes);
+        let far = goal.distances_c::<ROWS, S>(days);
+        let mut key = goal.keys::<ROWS, S>(days, &far);
         if unknown {
-            let without = goal.keys_unknown(days, statistics, &far);
+            let without = goal.keys_unknown::<ROWS, S>(days, &far);
             for i in (0..ROWS).filter(|&i| head.unknown || block.unknown[i]) {
                 key[i] = without[i];
             }
@@ -299,26 +334,31 @@ impl<'a> Walk<'a> {
         }
     }
 
-    /// Whether no row of a block, with this head, can be the best of its idea, an end of what is attainable, or on
-    /// the trade curve: what the rows span together is behind what is already found, by more than a tie.
+    /// Whether no row of a block, with this head, can be the best of its idea or an end of what is attainable: what the
+    /// rows span together is behind what is already found, by more than a tie. Gives then their least distance from the
+    /// preferred temperature, C, and their most oxygen, mg/L.
     #[inline]
-    fn beaten<const B: usize>(&self, block: &Block, head: &Sums, found: &Found) -> bool {
+    fn behind<const B: usize, const S: usize>(
+        &self,
+        block: &Block,
+        head: &Head<B>,
+        best: &[At],
+        found: &Found,
+    ) -> Option<(f64, f64)> {
         let goal = self.task.goal;
-        let statistics = if B == 1 { 1 } else { 3 };
-        let (span, least_mg_l) = block.span::<B>(&head.lanes, self.task.levels);
+        let (span, least_mg_l) = block.span(head);
         let inside = span.low_c[0][0] > found.coldest.0 + SAFE
             && span.high_c[0][0] < found.warmest.0 - SAFE
             && least_mg_l > found.least_oxygen.0 + SAFE
             && span.oxygen_mg_l[0][0] < found.most_oxygen.0 - SAFE;
         if !inside {
-            return false;
+            return None;
         }
-        let [far] = goal.distances_c(&span, statistics);
-        if !found.beaten_in_both((far - SAFE).max(0.0), span.oxygen_mg_l[0][0] + SAFE) {
-            return false;
-        }
-        let [key] = goal.keys(&Self::eased(span), statistics, &[(far - SAFE).max(0.0)]);
-        block.ideas.iter().all(|idea| key > found.best[head.idea + idea].0)
+        let eased = Self::eased(span);
+        let far = goal.distances_c::<1, S>(&eased);
+        let [key] = goal.keys::<1, S>(&eased, &far);
+        let behind = block.ideas.iter().all(|&idea| key > best[idea].0);
+        behind.then_some((far[0], eased.oxygen_mg_l[0][0]))
     }
 
     /// A span made a hair better than it is, so that no round-off can make a row better than its span.

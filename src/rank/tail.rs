@@ -2,7 +2,7 @@
 //!
 //! Methods: `docs/methods.md`, section 10.
 
-use super::choices::{Choice, Choices, Lanes, Levels};
+use super::choices::{Choice, Choices, Lanes, Levels, MOST_BLOCKS};
 use super::goal::Days;
 
 /// Rows of a block (choice): enough for side by side, few enough that their water is alike.
@@ -11,6 +11,28 @@ pub(super) const ROWS: usize = 8;
 /// Values of the rows of a block; rows that are not there repeat the last.
 type Column = [f64; ROWS];
 
+/// What the head adds to every row, at hand.
+pub(super) struct Head<const B: usize> {
+    /// Flow, heat and oxygen in each part of the day.
+    water: [[f64; 3]; B],
+    cold: f64,
+    effort: f64,
+    /// Share of the day of each part.
+    weights: [f64; B],
+}
+
+impl<const B: usize> Head<B> {
+    pub(super) fn of(sums: &[f64], levels: &Levels) -> Self {
+        let lanes = levels.lanes;
+        Self {
+            water: std::array::from_fn(|b| [sums[3 * b], sums[3 * b + 1], sums[3 * b + 2]]),
+            cold: sums[lanes.cold()],
+            effort: sums[lanes.effort()],
+            weights: std::array::from_fn(|b| if B == 1 { 1.0 } else { levels.weights[b] }),
+        }
+    }
+}
+
 /// Some rows that take one share and whose water is alike.
 #[derive(Debug, Clone)]
 pub(super) struct Block {
@@ -18,8 +40,10 @@ pub(super) struct Block {
     pub(super) rows: usize,
     /// Each lane of the rows.
     lanes: Vec<Column>,
-    /// Least and greatest of each lane.
-    spans: Vec<[f64; 2]>,
+    /// Least and greatest of what they add in each part of the day: flow, heat, oxygen.
+    water: [[[f64; 2]; 3]; MOST_BLOCKS],
+    /// Least of the cold water and of the effort they add.
+    least: [f64; 2],
     /// Oxygen of each row is unknown.
     pub(super) unknown: [bool; ROWS],
     /// Index of the idea of each row.
@@ -40,12 +64,16 @@ impl Block {
             let least = column.iter().copied().fold(f64::INFINITY, f64::min);
             [least, column.iter().copied().fold(f64::NEG_INFINITY, f64::max)]
         };
+        let water = std::array::from_fn(|b| {
+            [0, 1, 2].map(|i| if b < lanes.blocks { span(&columns[3 * b + i]) } else { [0.0; 2] })
+        });
         let mut ideas: Vec<usize> = rows.iter().map(|r| r.idea).collect();
         ideas.sort_unstable();
         ideas.dedup();
         Some(Self {
             rows: rows.len(),
-            spans: columns.iter().map(span).collect(),
+            water,
+            least: [lanes.cold(), lanes.effort()].map(|lane| span(&columns[lane])[0]),
             lanes: columns,
             unknown: std::array::from_fn(|i| row(i).unknown),
             idea: std::array::from_fn(|i| row(i).idea),
@@ -66,18 +94,16 @@ impl Block {
 
     /// What all rows together span, with what the head adds; and the least of their oxygen, mg/L.
     #[inline]
-    pub(super) fn span<const B: usize>(&self, head: &[f64], levels: &Levels) -> (Days<1>, f64) {
-        let lanes = levels.lanes;
-        let ends = |lane: usize| [head[lane] + self.spans[lane][0], head[lane] + self.spans[lane][1]];
+    pub(super) fn span<const B: usize>(&self, head: &Head<B>) -> (Days<1>, f64) {
         let mut days = Days::<1>::default();
         let (mut least_mg_l, mut mean_flow) = (0.0, 0.0);
         for b in 0..B {
-            let [flow, heat, oxygen] = [3 * b, 3 * b + 1, 3 * b + 2].map(ends);
+            let [flow, heat, oxygen] = [0, 1, 2].map(|i| self.water[b][i].map(|end| head.water[b][i] + end));
             let per = flow.map(|q| 1.0 / q);
             // heat may lie below zero, so either end of the flow can make the least and the greatest
             let low = (heat[0] * per[0]).min(heat[0] * per[1]);
             let high = (heat[1] * per[0]).max(heat[1] * per[1]);
-            let weight = if B == 1 { 1.0 } else { levels.weights[b] };
+            let weight = head.weights[b];
             mean_flow += weight * flow[1];
             least_mg_l += weight * oxygen[0] * per[1];
             days.oxygen_mg_l[0][0] += weight * oxygen[1] * per[0];
@@ -100,8 +126,8 @@ impl Block {
                 }
             }
         }
-        days.cold_share[0] = ends(lanes.cold())[0] / mean_flow;
-        days.effort[0] = ends(lanes.effort())[0];
+        days.cold_share[0] = (head.cold + self.least[0]) / mean_flow;
+        days.effort[0] = head.effort + self.least[1];
         (days, least_mg_l)
     }
 }
@@ -125,16 +151,15 @@ impl Tail {
     }
 }
 
-/// Fills in the days of a block's rows, with what the head adds to each.
+/// Fills in temperature and oxygen of a block's rows, with what the head adds to each; gives the mean flow of each, of
+/// a steady day one over it.
 #[inline]
-pub(super) fn fill<const B: usize>(days: &mut Days<ROWS>, block: &Block, head: &[f64], levels: &Levels) {
-    let lanes = levels.lanes;
-    // mean of the flow; of a steady day one over it
+pub(super) fn waters<const B: usize>(days: &mut Days<ROWS>, block: &Block, head: &Head<B>) -> Column {
     let mut flows = [0.0; ROWS];
     for b in 0..B {
         let [flow, heat, oxygen] = [3 * b, 3 * b + 1, 3 * b + 2].map(|lane| &block.lanes[lane]);
-        let [head_flow, head_heat, head_oxygen] = [head[3 * b], head[3 * b + 1], head[3 * b + 2]];
-        let weight = if B == 1 { 1.0 } else { levels.weights[b] };
+        let [head_flow, head_heat, head_oxygen] = head.water[b];
+        let weight = head.weights[b];
         let (mut per, mut t, mut o) = ([0.0; ROWS], [0.0; ROWS], [0.0; ROWS]);
         for i in 0..ROWS {
             per[i] = 1.0 / (head_flow + flow[i]);
@@ -163,14 +188,20 @@ pub(super) fn fill<const B: usize>(days: &mut Days<ROWS>, block: &Block, head: &
     for statistic in 0..if B == 1 { 1 } else { 3 } {
         days.high_c[statistic] = days.low_c[statistic];
     }
+    flows
+}
+
+/// Fills in the days of a block's rows, with what the head adds to each.
+#[inline]
+pub(super) fn fill<const B: usize>(days: &mut Days<ROWS>, block: &Block, head: &Head<B>, lanes: Lanes) {
+    let flows = waters(days, block, head);
     let [cold, effort] = [lanes.cold(), lanes.effort()].map(|lane| &block.lanes[lane]);
-    let [head_cold, head_effort] = [lanes.cold(), lanes.effort()].map(|l| head[l]);
     for i in 0..ROWS {
-        let cold = head_cold + cold[i];
+        let cold = head.cold + cold[i];
         days.cold_share[i] = if B == 1 { cold * flows[i] } else { cold / flows[i] };
     }
-    for i in 0..ROWS {
-        days.effort[i] = head_effort + effort[i];
+    for (sum, effort) in days.effort.iter_mut().zip(effort) {
+        *sum = head.effort + effort;
     }
 }
 

@@ -49,7 +49,8 @@ fn dam(gates: usize, others: &[&str]) -> Option<Site> {
     for line in others {
         text += &format!("  - {line}\n");
     }
-    text += "targets:\n  - { name: cold, low: 9, preferred: 12, high: 14, oxygen_min: 7 }\ncold_water: [10]\n";
+    text +=
+        "targets:\n  - { name: cold, low: 9, preferred: 12, high: 14, oxygen_min: 7 }\ncold_water: [10]\n";
     site(&text, "site.yaml").site
 }
 

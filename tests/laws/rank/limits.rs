@@ -17,8 +17,8 @@ pub(super) fn limit(raw: &mut Raw, water: &Pool, flow_m3s: f64, dice: &mut Dice)
         well.min_flow_m3s = dice.maybe(4, 0.0..0.4 * flow_m3s);
         well.max_flow_m3s = dice.maybe(4, 0.5 * flow_m3s..1.5 * flow_m3s);
     }
-    raw.release_min_m3s = dice.maybe(30, 0.5 * flow_m3s..1.1 * flow_m3s);
-    raw.release_max_m3s = dice.maybe(30, 1.2 * flow_m3s..2.5 * flow_m3s);
+    raw.release_min_m3s = dice.maybe(30, 0.5 * flow_m3s..0.89 * flow_m3s);
+    raw.release_max_m3s = dice.maybe(20, 0.9 * flow_m3s..2.5 * flow_m3s);
     let names = |raw: &Raw, count: usize| -> Vec<String> {
         raw.outlets.iter().take(count).filter_map(|o| o.name.clone()).collect()
     };

@@ -166,8 +166,8 @@ impl Works<'_> {
             now.map(|now| limits::moves(site, now, &self.over_the_day(trials, &parts), &mut Vec::new()));
         let mut checks = Vec::new();
         for whole in wholes {
-            let before = now_or_not(before);
-            let whole = Whole { temperature_c, moves, before, ..whole };
+            let before = Before { flow_m3s: None, ..before };
+            let whole = Whole { temperature_c, moves, before: Some(before), ..whole };
             limits::whole(site, profile.pool_m, &whole, &mut checks);
         }
         // the release as a whole was asked for, not found
@@ -195,7 +195,9 @@ impl Works<'_> {
             let mine = |c: &Check| OF_THE_RELEASE.contains(&c.rule) && (c.rule == Rule::Drawdown) == of_a_day;
             checks.extend(all.into_iter().filter(|c| c.broken() && mine(c)));
         };
-        blocks.iter().for_each(|b| judge(b.1, false));
+        for block in blocks {
+            judge(block.1, false);
+        }
         judge(blocks.iter().map(|b| b.0 * b.1).sum(), true);
         worst(checks)
     }
@@ -203,10 +205,6 @@ impl Works<'_> {
 
 const OF_THE_RELEASE: [Rule; 5] =
     [Rule::ReleaseMin, Rule::ReleaseMax, Rule::FlowChangePerHour, Rule::FlowChangePerDay, Rule::Drawdown];
-
-fn now_or_not(before: Before) -> Option<Before> {
-    Some(Before { flow_m3s: None, ..before })
-}
 
 /// A day's water and what the change to it takes.
 struct Day<'a> {

@@ -35,11 +35,16 @@ pub(super) struct Trial {
     pub(super) broken: Vec<Check>,
 }
 
+/// Where a sink draws.
 type Place = (u64, bool, u64);
+/// Layers that sinks draw, by place and flow.
+type Reaches = HashMap<(Place, u64), Rc<Vec<Check>>>;
 
 /// What is asked, with everything taken apart.
 pub(super) struct Works<'a> {
     pub(super) question: &'a Question<'a>,
+    /// Steps of the release; none where what spills by itself is all of it.
+    pub(super) steps: usize,
     pub(super) groups: Vec<Vec<usize>>,
     pub(super) parts: Vec<Part>,
     /// What is shared out in each part of the day, m3/s.
@@ -47,7 +52,7 @@ pub(super) struct Works<'a> {
     most_m3s: f64,
     curves: RefCell<HashMap<Place, Rc<Curve>>>,
     trials: RefCell<HashMap<(usize, usize, usize), Rc<Trial>>>,
-    reaches: RefCell<HashMap<(Place, u64), Rc<Vec<Check>>>>,
+    reaches: RefCell<Reaches>,
     kept: RefCell<HashMap<(Place, usize), f64>>,
 }
 
@@ -61,12 +66,15 @@ impl<'a> Works<'a> {
         let direct = site.outlets.iter().filter(|o| o.well.is_none());
         let leaks: f64 = direct.map(|o| leak_m3s(o, pool_m - o.centre_m, 0.5)).sum();
         let blocks = question.blocks.iter().map(|b| b.1);
+        let shared_out_m3s: Vec<f64> = blocks.clone().map(|flow| (flow - spilt).max(0.0)).collect();
+        let nothing = shared_out_m3s.iter().all(|flow| *flow <= 0.0);
         Self {
             question,
             groups,
             parts,
-            shared_out_m3s: blocks.clone().map(|flow| flow - spilt).collect(),
-            most_m3s: blocks.fold(0.0, f64::max) + leaks,
+            shared_out_m3s,
+            steps: if nothing { 0 } else { question.steps },
+            most_m3s: blocks.fold(spilt, f64::max) + leaks,
             curves: RefCell::default(),
             trials: RefCell::default(),
             reaches: RefCell::default(),
@@ -142,11 +150,11 @@ impl<'a> Works<'a> {
     }
 
     fn tried(&self, part: &Part, openings: &[f64], share: usize) -> Trial {
-        let Question { site, profile, date, steps, blocks, .. } = *self.question;
+        let Question { site, profile, date, blocks, .. } = *self.question;
         let pool_m = profile.pool_m;
         let open: Vec<(usize, f64)> =
             part.outlets.iter().copied().zip(openings.iter().copied()).filter(|o| o.1 > 0.0).collect();
-        let part_of_it = share as f64 / steps as f64;
+        let part_of_it = share as f64 / self.steps.max(1) as f64;
         let totals_m3s: Vec<f64> = self.shared_out_m3s.iter().map(|flow| part_of_it * flow).collect();
         let mut trial = Trial { open, flows: Vec::new(), totals_m3s, broken: Vec::new() };
         let mut checks = Vec::new();

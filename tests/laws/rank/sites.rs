@@ -161,7 +161,7 @@ fn crest(out: &mut RawOutlet, water: &Pool, dice: &mut Dice) {
         out.positions = vec![leaf("three leaves", 0.4), leaf("two leaves", 2.0), leaf("one leaf", 4.5)];
     } else if out.well.is_none() && dice.once_in(2) {
         // now and then above the water
-        out.centre_m = Some(water.surface_m - dice.between(-0.2..0.6));
+        out.centre_m = Some(water.surface_m - dice.between(-0.2..2.0));
     } else {
         out.gated = Some(true);
         out.centre_m = Some(water.surface_m - dice.between(-0.3..3.0));
