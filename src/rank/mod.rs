@@ -11,14 +11,16 @@ mod offers;
 mod ranking;
 mod search;
 mod seats;
+mod sums;
 mod tail;
 mod tries;
 mod units;
+mod whole;
 
 use chrono::NaiveDate;
 
 use crate::intake;
-use crate::mix::limits::{self, Before, Check, Of, Rule, Whole};
+use crate::mix::limits::{self, Before, Check, Of, Rule};
 use crate::mix::{Setting, groups};
 use crate::problem::Problem;
 use crate::profile::Profile;
@@ -31,9 +33,10 @@ use found::Found;
 use goal::{Efforts, Goal};
 use offers::Offers;
 use ranking::Decoder;
-use search::{Task, WholeRule};
+use search::Task;
 use seats::Level;
 use tries::Kitchen;
+use whole::{Told, hopeless, whole_rules};
 
 pub use curve::{Curve, Curves, Water};
 pub use goal::Criterion;
@@ -259,92 +262,4 @@ fn kept_m3s(question: &Question, layer: usize, (centre_m, opening): (f64, Openin
         }
     }
     low
-}
-
-/// What a rule of the whole is called and how a miss of it is told.
-struct Told {
-    rule: Rule,
-    of: Of,
-    item: usize,
-    bound: f64,
-    /// 1 where too much is a miss, -1 where too little is.
-    side: f64,
-}
-
-impl Told {
-    fn whole(rule: Rule, bound: f64) -> Self {
-        Self { rule, of: Of::Whole, item: 0, bound, side: 1.0 }
-    }
-
-    fn check(&self, miss: f64) -> Check {
-        let Self { rule, of, item, bound, side } = *self;
-        Check { rule, of, item, found: bound + side * miss, bound, room: -miss }
-    }
-}
-
-/// Rules of the whole mix that depend on which mix it is, each with how it is told. `shared` where several units draw
-/// through one level.
-fn whole_rules(question: &Question, shared: bool) -> (Vec<WholeRule>, Vec<Told>) {
-    let l = &question.site.limits;
-    let mut rules: Vec<(WholeRule, Told)> = Vec::new();
-    if let Some(most) = l.solids_max_mg_l {
-        rules.push((WholeRule::Solids(most), Told::whole(Rule::SolidsMax, most)));
-    }
-    for (i, share) in l.shares.iter().enumerate() {
-        let of = Of::Share(i);
-        if let Some(least) = share.min {
-            let told = Told { of, side: -1.0, ..Told::whole(Rule::ShareMin, least) };
-            rules.push((WholeRule::ShareMin(i, least), told));
-        }
-        if let Some(most) = share.max {
-            rules.push((WholeRule::ShareMax(i, most), Told { of, ..Told::whole(Rule::ShareMax, most) }));
-        }
-    }
-    let (per_hour, per_day) = limits::change_times(question.site);
-    let changes = [
-        (Rule::TemperatureChangePerHour, l.temperature_change_c_per_hour, per_hour),
-        (Rule::TemperatureChangePerDay, l.temperature_change_c_per_day, per_day),
-    ];
-    for (rule, rate, times) in changes {
-        if let (Some(from_c), Some(rate)) = (question.before.temperature_c, rate) {
-            let most_c = rate * times;
-            rules.push((WholeRule::TemperatureChange { from_c, most_c }, Told::whole(rule, most_c)));
-        }
-    }
-    if question.now.is_some() {
-        if let Some(most) = l.max_moves {
-            rules.push((WholeRule::Moves(most as f64), Told::whole(Rule::MaxMoves, most as f64)));
-        }
-        if let Some(most) = l.max_crew_hours {
-            rules.push((WholeRule::CrewHours(most), Told::whole(Rule::MaxCrewHours, most)));
-        }
-    }
-    if shared {
-        for item in 0..l.undrawn.len() {
-            let told = Told { item, ..Told::whole(Rule::Undrawn, 0.0) };
-            rules.push((WholeRule::Undrawn(item), told));
-        }
-    }
-    rules.into_iter().unzip()
-}
-
-/// Limits that the release asked for breaks, whatever the mix.
-fn hopeless(question: &Question) -> Vec<Check> {
-    let Question { site, profile, blocks, .. } = *question;
-    let mean = blocks.iter().map(|b| b.0 * b.1).sum();
-    let mut out: Vec<Check> = Vec::new();
-    let mut against = |flow_m3s: f64, of_a_day: bool| {
-        let before = Before { temperature_c: None, ..question.before };
-        let release = Whole { flow_m3s, before: Some(before), ..Whole::default() };
-        let mut checks = Vec::new();
-        limits::whole(site, profile.pool_m, &release, &mut checks);
-        out.extend(checks.into_iter().filter(|c| c.broken() && (c.rule == Rule::Drawdown) == of_a_day));
-    };
-    against(mean, true);
-    for block in blocks {
-        against(block.1, false);
-    }
-    out.sort_by(|a, b| a.rule.cmp(&b.rule).then(a.room.total_cmp(&b.room)));
-    out.dedup_by_key(|c| c.rule);
-    out
 }

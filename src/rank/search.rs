@@ -14,10 +14,12 @@ use std::sync::atomic::{AtomicBool, AtomicUsize, Ordering};
 use rayon::prelude::*;
 
 use super::arrange::{arranged, ways};
-use super::choices::{Choice, Choices, Levels, MOST_BLOCKS, Part};
+use super::choices::{Choice, Choices, Levels, MOST_BLOCKS};
 use super::found::{At, Found, lower};
 use super::goal::{Days, Goal};
+use super::sums::{Sums, put};
 use super::tail::{Block, Head, ROWS, Tail, fill, greatest, least, waters};
+use super::whole::WholeRule;
 
 /// A rule is kept when it is missed by less than this share of its bound: round-off.
 const ROUND_OFF: f64 = 1e-9;
@@ -33,30 +35,6 @@ const LOTS: usize = 128;
 
 /// Told how much is done, 0 to 1, and asked whether to go on.
 pub type Progress<'a> = &'a (dyn Fn(f64) -> ControlFlow<()> + Sync);
-
-/// A rule of the whole mix.
-#[derive(Debug, Clone, Copy)]
-pub(super) enum WholeRule {
-    /// No more solids in any block, mg/L.
-    Solids(f64),
-    /// A share of the release, at least.
-    ShareMin(usize, f64),
-    /// A share of the release, at most.
-    ShareMax(usize, f64),
-    /// A change of temperature from what is released now (C), at most.
-    TemperatureChange {
-        /// Temperature now, C.
-        from_c: f64,
-        /// Greatest change, C.
-        most_c: f64,
-    },
-    /// No more moves.
-    Moves(f64),
-    /// No more crew hours.
-    CrewHours(f64),
-    /// A layer not to be drawn through a shared level; its index among such layers.
-    Undrawn(usize),
-}
 
 /// What the search needs.
 pub(super) struct Task<'a> {
@@ -124,32 +102,6 @@ fn walked(task: &Task, to_beat: &Found) -> Option<Found> {
     let found =
         (0..LOTS.min(first.len())).into_par_iter().map(lot).reduce(|| to_beat.clone(), |a, b| a.merge(&b));
     (!stopped.load(Ordering::Relaxed)).then_some(found)
-}
-
-/// Sums of the head of a mix.
-struct Sums<'a> {
-    lanes: Vec<f64>,
-    unknown: bool,
-    idea: usize,
-    number: u64,
-    parts: Vec<&'a Part>,
-    /// Slots of the parts, and of those with several, as bits.
-    slots: u64,
-    shared: u64,
-}
-
-impl Sums<'_> {
-    fn nothing(lanes: usize) -> Self {
-        Self {
-            lanes: vec![0.0; lanes],
-            unknown: false,
-            idea: 0,
-            number: 0,
-            parts: Vec::new(),
-            slots: 0,
-            shared: 0,
-        }
-    }
 }
 
 /// A walk through the head.
@@ -417,21 +369,4 @@ impl<'a> Walk<'a> {
         }
         keeps
     }
-}
-
-/// Sums at `depth + 1` are those at `depth` with a choice put on.
-fn put<'a>(stack: &mut [Sums<'a>], depth: usize, choice: &'a Choice) {
-    let (below, above) = stack.split_at_mut(depth + 1);
-    let (before, after) = (&below[depth], &mut above[0]);
-    for (lane, (a, b)) in after.lanes.iter_mut().zip(before.lanes.iter().zip(&choice.lanes)) {
-        *lane = a + b;
-    }
-    after.unknown = before.unknown || choice.unknown;
-    after.idea = before.idea + choice.idea;
-    after.number = before.number + choice.number;
-    after.slots = before.slots | choice.slots;
-    after.shared = before.shared | (before.slots & choice.slots);
-    after.parts.clear();
-    after.parts.extend_from_slice(&before.parts);
-    after.parts.extend(&choice.parts);
 }

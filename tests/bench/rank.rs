@@ -22,6 +22,8 @@ const SLOWEST_S: f64 = 0.5;
 const SAMPLES: usize = 200;
 const POOL_M: f64 = 72.0;
 const FLOW_M3S: f64 = 60.0;
+/// What every gate of a well is.
+const GATE: &str = "height: 4, width: 5, loss: 1.5, positions: [0, 50, 100]";
 /// Steps of 2 %.
 const STEPS: usize = 50;
 const ROUNDS: usize = 9;
@@ -36,18 +38,20 @@ fn dam(gates: usize, others: &[&str]) -> Option<Site> {
     let mut text = String::from(
         "name: Bench Dam (invented)\nunits: { length: m, area: m2, volume: m3, flow: m3/s, temperature: C }\nutc_offset: \"+00:00\"\nplace: { altitude: 100 }\npool:\n  bed: 0\n  full: 75\n  table: [[0, 1e5], [75, 9e6]]\nwells:\n  - { name: North, conduit: 3, max_open: 2, max_head_loss: 2 }\n  - { name: South, conduit: 3, max_open: 2, max_head_loss: 2 }\noutlets:\n",
     );
+    let mut lines = Vec::new();
     for well in ["North", "South"] {
         for i in 0..gates {
             let centre = 66.0 - 11.0 * i as f64;
             let letter = &well[..1];
-            text += &format!(
-                "  - {{ name: {letter}{}, well: {well}, centre: {centre}, height: 4, width: 5, loss: 1.5, positions: [0, 50, 100] }}\n",
-                i + 1
-            );
+            let number = i + 1;
+            lines.push(format!("{{ name: {letter}{number}, well: {well}, centre: {centre}, {GATE} }}"));
         }
     }
-    for line in others {
-        text += &format!("  - {line}\n");
+    lines.extend(others.iter().map(|line| (*line).to_owned()));
+    for line in lines {
+        text += "  - ";
+        text += &line;
+        text += "\n";
     }
     text +=
         "targets:\n  - { name: cold, low: 9, preferred: 12, high: 14, oxygen_min: 7 }\ncold_water: [10]\n";

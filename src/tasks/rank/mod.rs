@@ -8,10 +8,12 @@ mod shown;
 
 use std::ops::ControlFlow;
 
+use crate::intake;
 use crate::mix::limits::Before;
 use crate::mix::{Perturbed, Setting, groups};
 use crate::problem::Problem;
 use crate::rank::{Criterion, Question, Ranking, Stopped, rank as search};
+use crate::units::say;
 
 use super::words::Word;
 use super::{Context, Failure, now_setting, setting};
@@ -110,6 +112,7 @@ pub fn rank(
     let mut notes = plan.notes;
     let now = now(context, &asked.now, &mut notes)?;
     let (blocks, release_from) = asked::release(context, asked, now.as_ref())?;
+    notes.extend(spill(context, &blocks));
     let perturbed = Perturbed::new(site, &context.profile, context.age_days);
     let groups = groups(site);
     let date = context.on.date_naive();
@@ -187,6 +190,27 @@ fn now(context: &Context, typed: &[String], notes: &mut Vec<Problem>) -> Result<
     };
     notes.extend(understood.notes);
     Ok(Some(understood.setting))
+}
+
+/// Where as much spills by itself as is wanted.
+fn spill(context: &Context, blocks: &[(f64, f64)]) -> Option<Problem> {
+    let spilling = context.site().outlets.iter().filter(|o| intake::spills_by_itself(o));
+    let flows: Vec<(&str, f64)> = spilling
+        .filter_map(|o| Some((o.name.as_str(), intake::crest_flow_m3s(o, 1.0, context.profile.pool_m)?)))
+        .filter(|(_, flow)| *flow > 0.0)
+        .collect();
+    let spilt: f64 = flows.iter().map(|f| f.1).sum();
+    let least = blocks.iter().map(|b| b.1).fold(f64::INFINITY, f64::min);
+    (spilt >= least).then(|| {
+        let names: Vec<&str> = flows.iter().map(|f| f.0).collect();
+        let words = format!(
+            "{} spills {} by itself: of a release of {} nothing is left to share out",
+            names.join(", "),
+            say::m3s(spilt, 2),
+            say::m3s(least, 2)
+        );
+        Problem::flag("spills", words, "the pool must fall before less can be released")
+    })
 }
 
 /// Why there is no setting now, plainly.

@@ -39,9 +39,9 @@ pub(super) fn count(works: &Works, steps: usize) -> usize {
     ways[0] = 1;
     for part in &works.parts {
         let mut next = ways.clone();
-        for k in 0..=steps {
-            for j in k + 1..=steps {
-                next[j] += ways[k] * (part.states.len() - 1);
+        for (k, have) in ways.iter().enumerate() {
+            for more in next.iter_mut().skip(k + 1) {
+                *more += have * (part.states.len() - 1);
             }
         }
         ways = next;
