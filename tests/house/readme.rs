@@ -35,7 +35,7 @@ fn unchanged_readme_shows_what_the_program_prints() {
         if std::env::var_os("GATEMIX_WRITE_README").is_none() {
             assert_eq!(shown, printed, "rewrite with GATEMIX_WRITE_README=1 cargo test --test house");
         }
-        written += &format!("```text\n{printed}```{tail}");
+        written.extend(["```text\n", &printed, "```", tail]);
     }
     if std::env::var_os("GATEMIX_WRITE_README").is_some() {
         fs::write(root().join("README.md"), written).unwrap();
