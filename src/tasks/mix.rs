@@ -5,7 +5,8 @@ use crate::mix::{Blend, Mix, Perturbed, Setting, judge};
 use crate::problem::Problem;
 
 use super::change::{Change, change};
-use super::setting::{now_setting, setting};
+use super::day::{DayAnswer, day};
+use super::setting::{Understood, now_setting, setting};
 use super::words::Word;
 use super::{Context, Failure};
 
@@ -20,6 +21,9 @@ pub struct MixAnswer {
     pub now: Option<(Setting, Mix)>,
     /// What the change from it takes.
     pub change: Option<Change>,
+    /// The blocks of the day, where the site has any and openings alone were given; the setting and the mix are then
+    /// those of the longest, the standings of the mix those of the day.
+    pub day: Option<DayAnswer>,
 }
 
 /// What comes out of the setting that words say; without any, of the setting now.
@@ -28,7 +32,15 @@ pub struct MixAnswer {
 /// Words that cannot be understood or do not fit together; a gate above the water; a flow above capacity.
 pub fn mix(context: &Context, words: &[Word]) -> Result<MixAnswer, Failure> {
     let site = context.site();
-    let understood = if words.is_empty() {
+    let perturbed = Perturbed::new(site, &context.profile, context.age_days);
+    let of_day = day(context, &perturbed, words)?;
+    let longest = of_day.as_ref().and_then(|(day, notes)| {
+        let block = day.blocks.iter().rev().max_by(|a, b| a.share.total_cmp(&b.share))?;
+        Some(Understood { setting: block.setting.clone(), notes: notes.clone() })
+    });
+    let understood = if let Some(longest) = longest {
+        longest
+    } else if words.is_empty() {
         now_setting(context).map_err(|failure| match failure {
             Failure::Usage(why) => Failure::Usage(format!(
                 "no setting: give --set GATE=FLOW, or --open GATE=PERCENT with --release FLOW; of the setting now, {why}"
@@ -38,7 +50,6 @@ pub fn mix(context: &Context, words: &[Word]) -> Result<MixAnswer, Failure> {
     } else {
         setting(context, words)?
     };
-    let perturbed = Perturbed::new(site, &context.profile, context.age_days);
     let date = context.on.date_naive();
     let judged = judge(site, &context.profile, &perturbed, &understood.setting, date);
     let Some(mut mix) = judged else {
@@ -56,7 +67,23 @@ pub fn mix(context: &Context, words: &[Word]) -> Result<MixAnswer, Failure> {
         mix.add_limits(site, &context.profile.column, &understood.setting, checks);
         change
     });
-    Ok(MixAnswer { setting: understood.setting, mix, now, change })
+    let day = of_day.map(|(day, _)| day);
+    if let Some(day) = &day {
+        mix.targets.clone_from(&day.targets);
+        mix.warnings.extend(other_blocks(day, &mix.warnings));
+    }
+    Ok(MixAnswer { setting: understood.setting, mix, now, change, day })
+}
+
+/// Limits that blocks other than the longest miss.
+fn other_blocks(day: &DayAnswer, told: &[Problem]) -> Vec<Problem> {
+    let mut out: Vec<Problem> = Vec::new();
+    for problem in day.blocks.iter().flat_map(|b| &b.mix.warnings).filter(|p| p.kind == "limit") {
+        if !told.contains(problem) && !out.contains(problem) {
+            out.push(problem.clone());
+        }
+    }
+    out
 }
 
 /// The setting now judged beside another, or why it cannot be shown.

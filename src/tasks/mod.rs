@@ -14,6 +14,7 @@ use crate::site::Site;
 use crate::units::{Dimension, System};
 
 mod change;
+mod day;
 mod mix;
 mod pool;
 pub mod rank;
@@ -21,6 +22,7 @@ mod setting;
 mod words;
 
 pub use change::{Change, Move};
+pub use day::{BlockAnswer, DayAnswer};
 pub use mix::{MixAnswer, mix};
 pub use pool::{ColdWater, OutletState, PoolAnswer, pool};
 pub use setting::{Understood, now_setting, setting};

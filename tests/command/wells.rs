@@ -322,3 +322,29 @@ fn scenario_the_setting_now_may_stand_in_openings() {
     let unknown = mix(&with(SITE, "now: { N1: 10 }", "now: { N1: 50% }"), "--set N1=10");
     assert!(said(&unknown, "now-not-shown").unwrap().ends_with("(--set North=30; under `now`, North: 30)"));
 }
+
+#[test]
+fn scenario_openings_alone_are_held_through_the_blocks_of_the_day() {
+    let blocks = "blocks: [ { name: peak, hours: 6, flow: 30 }, { name: rest, hours: 18, flow: 8 } ]\n";
+    let folder = Folder::new(&format!("{SITE}{blocks}"), &[("a.csv", CAST.as_bytes())]);
+    let open = ["--open", "N1=100%"];
+    let json = |more: &[&str]| -> serde_json::Value {
+        let run = run(&[&["mix", folder.named(), "--json"][..], &open, more].concat());
+        serde_json::from_str(&run.out).unwrap_or_else(|e| panic!("{e}: {} {}", run.out, run.err))
+    };
+    let day = json(&[]);
+    let [peak, rest] = ["30", "8"].map(|flow| json(&["--release", flow]));
+    let t = |of: &serde_json::Value| of["release"]["temperature_c"].as_f64().unwrap();
+    let (warm, cold) = (t(&peak), t(&rest));
+    assert!((warm - cold).abs() > 1e-3);
+    let near = |found: &serde_json::Value, wanted: f64| {
+        assert!((found.as_f64().unwrap() - wanted).abs() < 1e-9, "{found} {wanted}");
+    };
+    // a gauge sees 6 and 18 hours; heat balances see 6 x 30 and 18 x 8
+    near(&day["day"]["time_mean_c"], (6.0 * warm + 18.0 * cold) / 24.0);
+    near(&day["day"]["by_flow_c"], (180.0 * warm + 144.0 * cold) / 324.0);
+    near(&day["day"]["least_c"], warm.min(cold));
+    near(&day["day"]["greatest_c"], warm.max(cold));
+    assert_eq!(day["targets"][0]["basis"], "blocks");
+    assert!(peak["day"].is_null());
+}

@@ -7,7 +7,9 @@ use gatemix::profile::{Column, OxygenSample, Sample};
 use gatemix::withdrawal::{End, Sink, Zone, boundary_factor, zone};
 use proptest::prelude::*;
 
-use crate::columns::{Pool, angle, any_water, config, flow, fresh, given, port, share, slack, stable, worked};
+use crate::columns::{
+    Pool, angle, any_water, config, flow, fresh, given, port, share, slack, stable, worked,
+};
 
 const GRAVITY_M_S2: f64 = 9.80665;
 

@@ -18,9 +18,9 @@ use crate::units::{System, in_system};
 use crate::withdrawal::{End, Opening};
 
 use shape::{
-    CheckJson, ColdJson, FlagJson, Head, LayeringJson, LevelJson, MixJson, MovedJson, NowJson, OutletJson,
-    PoolJson, ProblemJson, ProfileJson, ReleaseJson, SettingJson, TargetJson, WarningJson, WellJson,
-    ZoneJson,
+    BlockJson, CheckJson, ColdJson, DayJson, FlagJson, Head, LayeringJson, LevelJson, MixJson, MovedJson,
+    NowJson, OutletJson, PoolJson, ProblemJson, ProfileJson, ReleaseJson, SettingJson, TargetJson,
+    WarningJson, WellJson, ZoneJson,
 };
 
 use super::sentence::{METHOD, caution};
@@ -37,7 +37,24 @@ pub fn mix(context: &Context, answer: &MixAnswer) -> String {
         wells: answer.setting.wells.iter().map(|w| well(site, &answer.setting, w)).collect(),
         levels: answer.mix.levels.iter().map(|d| level(site, d)).collect(),
         release: release(&answer.mix),
-        targets: targets(site, &answer.mix.targets, "steady"),
+        targets: targets(site, &answer.mix.targets, if answer.day.is_some() { "blocks" } else { "steady" }),
+        day: answer.day.as_ref().map(|day| DayJson {
+            blocks: day
+                .blocks
+                .iter()
+                .map(|b| BlockJson {
+                    name: site.blocks[b.block].name.clone(),
+                    share: b.share,
+                    setting: setting(site, &b.setting),
+                    release: release(&b.mix),
+                })
+                .collect(),
+            time_mean_c: day.time_mean_c,
+            least_c: day.extremes_c[0],
+            greatest_c: day.extremes_c[1],
+            by_flow_c: day.by_flow_c,
+            time_mean_mg_l: day.time_mean_mg_l,
+        }),
         now: answer.now.as_ref().map(|(now, mix)| NowJson {
             setting: setting(site, now),
             release: release(mix),

@@ -45,6 +45,7 @@ pub(super) struct MixJson {
     pub(super) levels: Vec<LevelJson>,
     pub(super) release: ReleaseJson,
     pub(super) targets: Vec<TargetJson>,
+    pub(super) day: Option<DayJson>,
     pub(super) now: Option<NowJson>,
     pub(super) moves: Option<usize>,
     pub(super) moved: Option<Vec<MovedJson>>,
@@ -56,6 +57,25 @@ pub(super) struct MixJson {
     pub(super) not_checked: Vec<String>,
     pub(super) warnings: Vec<WarningJson>,
     pub(super) caution: &'static str,
+}
+
+#[derive(Serialize)]
+pub(super) struct DayJson {
+    pub(super) blocks: Vec<BlockJson>,
+    pub(super) time_mean_c: f64,
+    pub(super) least_c: f64,
+    pub(super) greatest_c: f64,
+    pub(super) by_flow_c: f64,
+    pub(super) time_mean_mg_l: Option<f64>,
+}
+
+#[derive(Serialize)]
+pub(super) struct BlockJson {
+    pub(super) name: String,
+    pub(super) share: f64,
+    #[serde(flatten)]
+    pub(super) setting: SettingJson,
+    pub(super) release: ReleaseJson,
 }
 
 #[derive(Serialize)]

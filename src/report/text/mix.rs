@@ -6,7 +6,7 @@ use crate::mix::{Drawn, Gate, Mix, Setting, TargetStanding};
 use crate::problem::harmless;
 use crate::site::{Outlet, Site};
 use crate::target::{Standing, Target};
-use crate::tasks::{Context, MixAnswer};
+use crate::tasks::{Context, DayAnswer, MixAnswer};
 use crate::units::{Dimension, System, figure};
 use crate::withdrawal::{End, Side};
 
@@ -25,6 +25,9 @@ pub(super) fn body(context: &Context, answer: &MixAnswer) -> String {
         &format!("{} = {total} in total{leaks}", setting_words(site, &answer.setting, system)),
     );
     out.push_str(&labelled("Release", &release_line(&answer.mix, system)));
+    if let Some(day) = &answer.day {
+        out.push_str(&blocks(site, day, system));
+    }
     if let Some((now, mix)) = &answer.now {
         out.push_str(&against_now(site, now, mix, &answer.mix, system));
         if let Some(change) = &answer.change {
@@ -34,13 +37,42 @@ pub(super) fn body(context: &Context, answer: &MixAnswer) -> String {
     }
     out.push_str(&labelled("", "leaving the pool; brackets hold 10-90 % of our perturbed cases"));
     out.push('\n');
-    out.push_str(&standings(site, &answer.mix, system));
+    let basis = if answer.day.is_some() { "blocks of the day" } else { "steady release" };
+    out.push_str(&standings(site, &answer.mix, basis, system));
     out.push_str(&levels(site, &answer.mix.levels, system));
     out.push_str(&wells(site, &answer.setting, system));
     out.push('\n');
     out.push_str(&drawn_column(site, &context.profile, &answer.mix.levels, system));
     out.push('\n');
     out.push_str(&list("This setting", &flags_of(&answer.mix.warnings), false, system));
+    out
+}
+
+/// Each block of the day, then the day as a gauge sees it and by flow.
+fn blocks(site: &Site, day: &DayAnswer, system: System) -> String {
+    let mut out = String::new();
+    for (label, block) in std::iter::once("Blocks").chain(std::iter::repeat("")).zip(&day.blocks) {
+        let of = &site.blocks[block.block];
+        let release = &block.mix.release;
+        let words = format!(
+            "{} {:.1} h {}: {}, {}",
+            harmless(&of.name),
+            of.hours,
+            flow(release.flow_m3s, system),
+            temperature(release.temperature_c, system),
+            oxygen(release.oxygen_mg_l)
+        );
+        out.push_str(&labelled(label, &words));
+    }
+    let [coldest, warmest] = day.extremes_c;
+    let words = format!(
+        "by time {} ({} to {}), as a gauge sees it; by flow {}; standings below are of the day, the rest of the longest block",
+        temperature(day.time_mean_c, system),
+        temperature(coldest, system),
+        temperature(warmest, system),
+        temperature(day.by_flow_c, system)
+    );
+    out.push_str(&labelled("Day", &words));
     out
 }
 
@@ -179,7 +211,7 @@ fn standing_words(s: &TargetStanding, rule: &Target, system: System) -> String {
     [warm, aired].into_iter().flatten().collect::<Vec<_>>().join(", ")
 }
 
-fn standings(site: &Site, mix: &Mix, system: System) -> String {
+fn standings(site: &Site, mix: &Mix, basis: &str, system: System) -> String {
     if mix.targets.is_empty() {
         return labelled("Target", "none is valid on this date") + "\n";
     }
@@ -191,7 +223,7 @@ fn standings(site: &Site, mix: &Mix, system: System) -> String {
         let (name, point) = (harmless(&rule.name), harmless(&rule.point));
         out.push_str(&labelled(
             "Target",
-            &format!("{name} at the {point} ({statistic}, steady release){governs}"),
+            &format!("{name} at the {point} ({statistic}, {basis}){governs}"),
         ));
         let source = rule.source.as_deref().map_or_else(|| "no source given".to_owned(), harmless);
         out.push_str(&labelled("", &format!("{} [{source}]", range(rule, system))));

@@ -1,0 +1,85 @@
+//! A day of several blocks: gates that stand still while the release changes.
+
+use crate::mix::{Mix, Perturbed, Setting, TargetStanding, judge, standings};
+use crate::problem::Problem;
+
+use super::setting::setting;
+use super::words::Word;
+use super::{Context, Failure};
+
+/// One block of the day under some openings.
+#[derive(Debug, Clone)]
+pub struct BlockAnswer {
+    /// Index of the block in the site.
+    pub block: usize,
+    /// Its share of the day.
+    pub share: f64,
+    /// What its release makes of the openings.
+    pub setting: Setting,
+    /// What comes out.
+    pub mix: Mix,
+}
+
+/// A day of several blocks: what a gauge sees, and what heat balances use.
+#[derive(Debug, Clone)]
+pub struct DayAnswer {
+    /// The blocks, in the order of the site.
+    pub blocks: Vec<BlockAnswer>,
+    /// Temperature by time, C.
+    pub time_mean_c: f64,
+    /// Coldest and warmest block, C.
+    pub extremes_c: [f64; 2],
+    /// Temperature by flow, C.
+    pub by_flow_c: f64,
+    /// Oxygen by time, mg/L.
+    pub time_mean_mg_l: Option<f64>,
+    /// Standings over the day.
+    pub targets: Vec<TargetStanding>,
+}
+
+/// The site's blocks under openings alone, where it has any and no release is given; the openings are then held all
+/// day and each block's release is what the one well with open gates carries.
+///
+/// # Errors
+/// As [`setting`].
+pub(super) fn day(
+    context: &Context,
+    perturbed: &Perturbed,
+    words: &[Word],
+) -> Result<Option<(DayAnswer, Vec<Problem>)>, Failure> {
+    let site = context.site();
+    let by_opening = !words.is_empty() && words.iter().all(|w| matches!(w, Word::Open(_)));
+    if site.blocks.is_empty() || !by_opening {
+        return Ok(None);
+    }
+    let mut notes = Vec::new();
+    let mut blocks = Vec::new();
+    for (block, of) in site.blocks.iter().enumerate() {
+        let flow = format!("{} m3/s", of.flow_m3s);
+        let words: Vec<Word> = words.iter().copied().chain([Word::Release(&flow)]).collect();
+        let understood = setting(context, &words)?;
+        notes = understood.notes;
+        let date = context.on.date_naive();
+        let Some(mix) = judge(site, &context.profile, perturbed, &understood.setting, date) else {
+            return Ok(None);
+        };
+        blocks.push(BlockAnswer { block, share: of.hours / 24.0, setting: understood.setting, mix });
+    }
+    let parts: Vec<_> = blocks.iter().map(|b| (b.share, &b.mix.release, &b.mix.spread)).collect();
+    let targets = standings(site, &parts, context.on.date_naive());
+    let temperatures = || blocks.iter().map(|b| b.mix.release.temperature_c);
+    let flow = |b: &BlockAnswer| b.share * b.mix.release.flow_m3s;
+    let answer = DayAnswer {
+        time_mean_c: blocks.iter().map(|b| b.share * b.mix.release.temperature_c).sum(),
+        extremes_c: [
+            temperatures().fold(f64::INFINITY, f64::min),
+            temperatures().fold(f64::NEG_INFINITY, f64::max),
+        ],
+        by_flow_c: blocks.iter().map(|b| flow(b) * b.mix.release.temperature_c).sum::<f64>()
+            / blocks.iter().map(flow).sum::<f64>(),
+        time_mean_mg_l: blocks.iter().map(|b| Some(b.share * b.mix.release.oxygen_mg_l?)).sum(),
+        targets,
+        blocks,
+    };
+    Ok(Some((answer, notes)))
+}
