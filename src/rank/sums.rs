@@ -1,4 +1,6 @@
 //! Sums of a mix in the making, one set for each depth of the head.
+//!
+//! Methods: `docs/methods.md`, section 10.
 
 use super::choices::{Choice, Part};
 

@@ -1,4 +1,6 @@
 //! Rules of the whole mix: what the search tries each mix by, and how a miss is told.
+//!
+//! Methods: `docs/methods.md`, section 10.
 
 use crate::mix::limits::{self, Before, Check, Of, Rule, Whole};
 
