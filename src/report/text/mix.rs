@@ -221,10 +221,7 @@ fn standings(site: &Site, mix: &Mix, basis: &str, system: System) -> String {
         let governs = if s.governs && mix.targets.len() > 1 { ": governs" } else { "" };
         let statistic = rule.statistic.name().replace('_', " ");
         let (name, point) = (harmless(&rule.name), harmless(&rule.point));
-        out.push_str(&labelled(
-            "Target",
-            &format!("{name} at the {point} ({statistic}, {basis}){governs}"),
-        ));
+        out.push_str(&labelled("Target", &format!("{name} at the {point} ({statistic}, {basis}){governs}")));
         let source = rule.source.as_deref().map_or_else(|| "no source given".to_owned(), harmless);
         out.push_str(&labelled("", &format!("{} [{source}]", range(rule, system))));
         let percent = |share: Option<f64>| share.map(|s| format!("{:.0} %", 100.0 * s));
