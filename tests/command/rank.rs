@@ -301,3 +301,20 @@ fn scenario_a_gate_of_unconfirmed_position_has_its_line() {
     let text = run(&["rank", "ashlar"]).out;
     assert!(text.contains("Unsure   S1 is not confirmed shut; if it is fully open"), "{text}");
 }
+
+#[test]
+fn scenario_a_long_gate_name_leaves_its_flow_whole() {
+    let name = "Right bank low-level bypass valve chamber";
+    let folder = folder(&easy().replace("Sluice", name));
+    let text = run(&["rank", folder.named()]).out;
+    let list =
+        text.lines().skip_while(|l| !l.contains("gates (flows")).take_while(|l| !l.starts_with("10-90%"));
+    let list: Vec<&str> = list.collect();
+    assert!(list.iter().all(|l| l.chars().count() <= 80), "{text}");
+    let words: Vec<&str> = list.iter().flat_map(|l| l.split_whitespace()).collect();
+    let ends: Vec<usize> = (0..words.len()).filter(|at| words[*at] == "chamber").collect();
+    assert!(!ends.is_empty(), "{text}");
+    assert_eq!(ends.len(), words.iter().filter(|w| **w == "Right").count(), "{text}");
+    // a flow below 100 m3/s is told with its tenths
+    assert!(ends.iter().all(|at| words[at + 1].contains('.')), "{text}");
+}

@@ -33,7 +33,9 @@ pub(super) fn best(context: &Context, best: &Shown) -> String {
     if best.parts.len() > 1 {
         why.push(format!("weighted with the flow {}", temperature(best.by_flow_c, system)));
     }
-    let mut out = labelled("No. 1", &format!("{}. Why: {}.", set.join("; "), why.join("; ")));
+    // without a target and without a setting now there is nothing that puts it first but the fixed order
+    let why = if why.is_empty() { String::new() } else { format!(" Why: {}.", why.join("; ")) };
+    let mut out = labelled("No. 1", &format!("{}.{why}", set.join("; ")));
     for unsure in &best.unsure {
         let words = harmless(&in_system(&unsure_words(context.site(), unsure), system));
         out.push_str(&labelled("Unsure", &words));

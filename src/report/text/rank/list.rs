@@ -147,12 +147,29 @@ fn table(rows: &[(Cells, Vec<String>)]) -> String {
     out
 }
 
-/// A list cut after commas so that its lines fit.
+/// A list cut after commas so that its lines fit; a part that is wider than a line is cut at its spaces, a word that is
+/// wider anywhere: a flow that lost its last digits would be another flow.
 fn broken_at_commas(list: &str, width: usize) -> Vec<String> {
+    let narrow = width.saturating_sub(2);
+    let fits = |piece: &str| piece.trim_end().width() <= narrow;
+    let mut pieces: Vec<&str> = Vec::new();
+    for part in list.split_inclusive(", ") {
+        if part.trim_end().width() <= width && (pieces.is_empty() || fits(part)) {
+            pieces.push(part);
+            continue;
+        }
+        for word in part.split_inclusive(' ') {
+            if fits(word) {
+                pieces.push(word);
+            } else {
+                pieces.extend(word.split_inclusive(|_: char| true));
+            }
+        }
+    }
     let mut out = vec![String::new()];
-    for piece in list.split_inclusive(", ") {
+    for piece in pieces {
         let line = out.len() - 1;
-        let room = if line == 0 { width } else { width.saturating_sub(2) };
+        let room = if line == 0 { width } else { narrow };
         if !out[line].is_empty() && out[line].width() + piece.trim_end().width() > room {
             out.push(piece.to_owned());
         } else {
