@@ -135,7 +135,7 @@ pub fn rank(question: &Question, progress: Progress) -> Result<Ranking, Stopped>
         efforts: Efforts::of(site),
     };
     let offers = kitchen.offers();
-    let (rules, told) = whole_rules(question, !slots.is_empty());
+    let (rules, told) = whole_rules(question, !slots.is_empty(), leaks > 0.0 || nothing_left);
     let counts: Vec<Vec<u64>> = offers.choices.iter().map(choices::Choices::counts).collect();
     let to_judge = ways(&counts, question.steps)[question.steps];
     let ideas = offers.masks.iter().fold(1_usize, |n, (masks, _)| n.saturating_mul(masks.len().max(1)));

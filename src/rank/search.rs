@@ -346,6 +346,13 @@ impl<'a> Walk<'a> {
                     let worst = blocks.clone().map(|b| sum(lanes.solids(b)) / sum(3 * b)).fold(0.0, f64::max);
                     (worst - most, most)
                 }
+                WholeRule::ReleaseMin(least) => {
+                    let worst = blocks.clone().map(|b| sum(3 * b)).fold(f64::INFINITY, f64::min);
+                    (least - worst, least)
+                }
+                WholeRule::ReleaseMax(most) => {
+                    (blocks.clone().map(|b| sum(3 * b)).fold(0.0, f64::max) - most, most)
+                }
                 WholeRule::ShareMin(rule, least) => {
                     let worst = blocks.clone().map(|b| share(rule, b)).fold(f64::INFINITY, f64::min);
                     (least - worst, least)

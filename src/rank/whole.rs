@@ -11,6 +11,10 @@ use super::Question;
 pub(super) enum WholeRule {
     /// No more solids in any block, mg/L.
     Solids(f64),
+    /// No less in any block, leaks and spill counted in, m3/s.
+    ReleaseMin(f64),
+    /// No more in any block.
+    ReleaseMax(f64),
     /// A share of the release, at least.
     ShareMin(usize, f64),
     /// A share of the release, at most.
@@ -52,12 +56,21 @@ impl Told {
 }
 
 /// Rules of the whole mix that depend on which mix it is, each with how it is told. `shared` where several units draw
-/// through one level.
-pub(super) fn whole_rules(question: &Question, shared: bool) -> (Vec<WholeRule>, Vec<Told>) {
+/// through one level, `beside` where more may leave the dam than is asked for: leaks, or spill.
+pub(super) fn whole_rules(question: &Question, shared: bool, beside: bool) -> (Vec<WholeRule>, Vec<Told>) {
     let l = &question.site.limits;
     let mut rules: Vec<(WholeRule, Told)> = Vec::new();
     if let Some(most) = l.solids_max_mg_l {
         rules.push((WholeRule::Solids(most), Told::whole(Rule::SolidsMax, most)));
+    }
+    if beside {
+        if let Some(least) = question.site.release.min_m3s {
+            let told = Told { side: -1.0, ..Told::whole(Rule::ReleaseMin, least) };
+            rules.push((WholeRule::ReleaseMin(least), told));
+        }
+        if let Some(most) = question.site.release.max_m3s {
+            rules.push((WholeRule::ReleaseMax(most), Told::whole(Rule::ReleaseMax, most)));
+        }
     }
     for (i, share) in l.shares.iter().enumerate() {
         let of = Of::Share(i);

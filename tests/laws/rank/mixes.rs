@@ -170,8 +170,9 @@ impl Works<'_> {
             let whole = Whole { temperature_c, moves, before: Some(before), ..whole };
             limits::whole(site, profile.pool_m, &whole, &mut checks);
         }
-        // the release as a whole was asked for, not found
-        checks.retain(|c| c.broken() && !OF_THE_RELEASE.contains(&c.rule));
+        // changes and fall of the release were asked for, not found; leaks and spill come beside it
+        let found = |rule: Rule| matches!(rule, Rule::ReleaseMin | Rule::ReleaseMax);
+        checks.retain(|c| c.broken() && (found(c.rule) || !OF_THE_RELEASE.contains(&c.rule)));
         let day = Day {
             temperatures: &temperatures,
             mean_c: temperature_c,

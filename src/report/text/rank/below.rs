@@ -107,8 +107,10 @@ fn split(context: &Context, answer: &RankAnswer, split: &PreferredSplit) -> Stri
     } else {
         format!("of {}", named(context, &[&split.gates]).join(", "))
     };
-    let one =
-        |r: &Root| format!("{a} {}, {b} {}", flow(r.flows_m3s[0], system), flow(r.flows_m3s[1], system));
+    let one = |r: &Root| {
+        let air = oxygen(r.oxygen_mg_l);
+        format!("{a} {}, {b} {} (oxygen {air})", flow(r.flows_m3s[0], system), flow(r.flows_m3s[1], system))
+    };
     let roots: Vec<String> = split.roots.iter().map(one).collect();
     if roots.is_empty() {
         let unit = system.unit(Dimension::Temperature);
@@ -127,7 +129,7 @@ fn least(context: &Context, least: &Least) -> String {
         format!("{} {end} keeps every target: {gates}", flow(found, system))
     } else {
         let [low, high] = least.tried_m3s.map(|f| flow(f, system));
-        format!("no release tried, from {low} to {high}, keeps every target")
+        format!("no release tried, from {low} to {high}, has an allowed mix known to keep every target")
     }
 }
 

@@ -113,6 +113,7 @@ fn nothing_fits(context: &Context, answer: &RankAnswer) -> Option<String> {
         (NothingFits::NoneReaches, Some(nearest)) => {
             format!("No mix examined reaches every target. Nearest: {}", nearly(context, nearest))
         }
+        _ if answer.ranking.examined == 0 => "There is no mix: every outlet is left out.".into(),
         _ => "No mix is allowed: every one examined breaks a limit. What rejects them, with its smallest miss, stands below."
             .into(),
     };
