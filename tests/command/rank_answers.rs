@@ -171,7 +171,7 @@ fn scenario_the_ranking_is_one_screen_to_read_aloud() {
         "\nIf lost  N3: ",
         "possible from\n               2026-10-01",
         "Examined 77,991,781 mixes: ",
-        "\nNot checked: pool_window; min_submergence of Sluice; moves_under_flow;",
+        "\nNot checked of no. 1: pool_window; min_submergence of Sluice;",
     ] {
         assert!(text.contains(words), "{words}: {text}");
     }
@@ -206,4 +206,18 @@ fn scenario_what_spills_by_itself_may_be_more_than_is_asked() {
     assert_eq!(run.code, Some(0), "{}", run.err);
     let words = run.out.split_whitespace().collect::<Vec<_>>().join(" ");
     assert!(words.contains("Weir spills") && words.contains("nothing is left to share out"), "{}", run.out);
+}
+
+#[test]
+fn scenario_the_range_says_where_some_oxygen_is_unknown() {
+    let range = |cast: &str| {
+        let folder = Folder::new(SITE, &[("a.csv", cast.as_bytes())]);
+        let out = run(&["rank", folder.named()]).out;
+        let from = out.find("\nRange ").unwrap_or_else(|| panic!("{out}"));
+        out[from..].split_whitespace().take(17).collect::<Vec<_>>().join(" ")
+    };
+    assert!(!range(CAST).contains("unknown"));
+    let shallow = CAST.replace("6.5,4.5", "6.5,").replace("6.2,3.5", "6.2,");
+    let words = range(&shallow);
+    assert!(words.contains("mg/L oxygen, unknown for some"), "{words}");
 }

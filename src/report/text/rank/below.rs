@@ -55,7 +55,12 @@ pub(super) fn answers(context: &Context, answer: &RankAnswer) -> String {
         let warmest = temperature(warmest, context.system);
         let mut words = format!("allowed mixes give {} to {warmest}", figure(coldest, unit, 1));
         match answer.attainable_oxygen_mg_l {
-            Some([least, most]) => _ = write!(words, " and {least:.1} to {most:.1} mg/L oxygen"),
+            Some([least, most]) => {
+                // mixes of unknown oxygen are allowed too, and may lie outside
+                let unknown = answer.ranking.mixes.iter().any(|m| m.oxygen_mg_l.is_none());
+                let known = if unknown { ", unknown for some" } else { "" };
+                _ = write!(words, " and {least:.1} to {most:.1} mg/L oxygen{known}");
+            }
             None => words.push_str(", oxygen unknown"),
         }
         out.push_str(&labelled("Range", &words));

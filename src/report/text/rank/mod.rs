@@ -69,7 +69,7 @@ fn not_checked(context: &Context, best: &Shown) -> String {
     if told.is_empty() {
         return String::new();
     }
-    wrapped(&format!("Not checked: {}", harmless(&told.join("; "))), 2)
+    wrapped(&format!("Not checked of no. 1: {}", harmless(&told.join("; "))), 2)
 }
 
 fn asked(context: &Context, answer: &RankAnswer) -> String {
