@@ -12,6 +12,7 @@ pub mod report;
 pub mod site;
 pub mod target;
 pub mod tasks;
+pub mod tui;
 pub mod units;
 pub mod water;
 pub mod withdrawal;

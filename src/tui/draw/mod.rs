@@ -1,0 +1,1 @@
+//! Pictures: pure drawing of plain data into a buffer; nothing here knows the model.

@@ -1,0 +1,143 @@
+//! How things look: the characters of pictures, and a style for every meaning.
+//!
+//! A colour never stands alone: whatever it tells is also told by a sign or a word.
+
+use ratatui::style::{Color, Modifier, Style};
+
+/// Characters that pictures are drawn with.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
+pub enum Symbols {
+    /// Braille dots, two by four in a cell.
+    #[default]
+    Braille,
+    /// Half blocks, one by two in a cell: for terminals whose letters lack the dots.
+    Block,
+    /// Plain characters.
+    Ascii,
+}
+
+impl Symbols {
+    /// Each with its name in the settings.
+    pub const NAMES: [(&'static str, Self); 3] =
+        [("braille", Self::Braille), ("block", Self::Block), ("ascii", Self::Ascii)];
+}
+
+/// Where colours come from.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
+pub enum Theme {
+    /// What the terminal says of itself: no colours under `NO_COLOR`, the palette where it has 256, else the 16.
+    #[default]
+    Auto,
+    /// The 16 colours of the terminal, which follow the user's own.
+    Ansi,
+    /// Eight colours that colour-blind eyes tell apart, out of the 256.
+    Palette,
+    /// None.
+    Mono,
+}
+
+impl Theme {
+    /// Each with its name in the settings.
+    pub const NAMES: [(&'static str, Self); 4] =
+        [("auto", Self::Auto), ("ansi", Self::Ansi), ("256", Self::Palette), ("mono", Self::Mono)];
+}
+
+/// What a piece of the screen means.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Role {
+    /// Ordinary text.
+    Plain,
+    /// Axes, units, what is said beside.
+    Quiet,
+    /// Headings.
+    Strong,
+    /// The row or tab chosen.
+    Chosen,
+    /// A key that can be pressed.
+    Key,
+    /// The temperature curve and what belongs to it.
+    Temperature,
+    /// The oxygen curve and what belongs to it.
+    Oxygen,
+    /// The withdrawal zone of a level.
+    Zone,
+    /// Water colder than the threshold, and its line.
+    Cold,
+    /// The range of a target.
+    Range,
+    /// The setting now.
+    Now,
+    /// The setting tried.
+    Tried,
+    /// Inside a target, within a limit.
+    Inside,
+    /// Outside a target, beyond a limit.
+    Outside,
+    /// Worth a second look.
+    Warn,
+    /// A field being typed.
+    Field,
+    /// Shown from before, while the new is made.
+    Old,
+    /// The caution.
+    Caution,
+}
+
+/// Symbols and colours together.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
+pub struct Look {
+    /// Characters of pictures.
+    pub symbols: Symbols,
+    /// Colours; what [`Theme::Auto`] comes to is settled by whoever knows the terminal.
+    pub theme: Theme,
+}
+
+// Colours after Okabe and Ito, "Color universal design", 2008, nearest of the 256 (recalled).
+const SKY: Color = Color::Indexed(74);
+const ORANGE: Color = Color::Indexed(214);
+const GREEN: Color = Color::Indexed(36);
+const VERMILLION: Color = Color::Indexed(166);
+const BLUE: Color = Color::Indexed(32);
+const PURPLE: Color = Color::Indexed(175);
+const YELLOW: Color = Color::Indexed(227);
+
+impl Look {
+    /// The style of a meaning.
+    pub fn style(self, role: Role) -> Style {
+        let plain = Style::new();
+        let shape = match role {
+            Role::Strong | Role::Tried | Role::Outside => plain.add_modifier(Modifier::BOLD),
+            Role::Chosen | Role::Field => plain.add_modifier(Modifier::REVERSED),
+            Role::Key => plain.add_modifier(Modifier::BOLD),
+            Role::Old => plain.add_modifier(Modifier::DIM),
+            Role::Quiet if self.theme != Theme::Mono => plain.add_modifier(Modifier::DIM),
+            _ => plain,
+        };
+        // reversed text keeps the terminal's own colours: two attributes in one cell are lost on some terminals
+        match self.colour(role) {
+            Some(colour) if !matches!(role, Role::Chosen | Role::Field) => shape.fg(colour),
+            _ => shape,
+        }
+    }
+
+    fn colour(self, role: Role) -> Option<Color> {
+        let (palette, ansi) = match role {
+            Role::Temperature => (ORANGE, Color::Yellow),
+            Role::Oxygen => (SKY, Color::Cyan),
+            Role::Zone => (BLUE, Color::Blue),
+            Role::Cold => (SKY, Color::Cyan),
+            Role::Range | Role::Inside => (GREEN, Color::Cyan),
+            Role::Now => (PURPLE, Color::Magenta),
+            Role::Tried => (YELLOW, Color::Yellow),
+            Role::Outside => (VERMILLION, Color::Red),
+            Role::Warn | Role::Caution => (ORANGE, Color::Yellow),
+            Role::Key => (SKY, Color::Cyan),
+            Role::Plain | Role::Quiet | Role::Strong | Role::Chosen | Role::Field | Role::Old => return None,
+        };
+        match self.theme {
+            Theme::Mono => None,
+            Theme::Ansi => Some(ansi),
+            Theme::Palette | Theme::Auto => Some(palette),
+        }
+    }
+}
