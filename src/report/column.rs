@@ -166,7 +166,7 @@ fn curves(
 }
 
 /// Text cut or padded to a width in terminal cells.
-pub(super) fn fitted(text: &str, width: usize) -> String {
+pub fn fitted(text: &str, width: usize) -> String {
     let mut out = String::new();
     let mut used = 0;
     for c in text.chars() {

@@ -5,5 +5,5 @@ pub mod json;
 mod sentence;
 pub mod text;
 
-pub use column::drawn_column;
-pub use sentence::{METHOD, caution, flags_of};
+pub use column::{drawn_column, fitted};
+pub use sentence::{METHOD, caution, caution_within, flags_of};

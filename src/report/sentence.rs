@@ -13,6 +13,18 @@ pub fn caution() -> &'static str {
     "Advisory estimate. Operations defer to the dam-safety authority and the approved water control plan; a responsible licensed engineer decides. Warn downstream users of changes in stage and cold water."
 }
 
+/// The longest form of the caution that one line of so many cells holds; the shortest where none fits.
+pub fn caution_within(cells: usize) -> &'static str {
+    const SHORTER: [&str; 4] = [
+        "Advisory estimate: the dam-safety authority and the approved water control plan rule; a licensed engineer decides.",
+        "Advisory: dam safety and water control plan rule; a licensed engineer decides.",
+        "Advisory: dam safety rules, a licensed engineer decides.",
+        "Advisory; dam safety rules.",
+    ];
+    let fits = |text: &&str| text.chars().count() <= cells;
+    std::iter::once(caution()).chain(SHORTER).find(fits).unwrap_or(SHORTER[3])
+}
+
 /// Flags and notes of a list, flags first, each in the order it was found.
 pub fn flags_of(problems: &[Problem]) -> Vec<&Problem> {
     let mut out: Vec<&Problem> = problems.iter().collect();

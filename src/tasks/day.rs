@@ -3,8 +3,8 @@
 use crate::mix::{Mix, Perturbed, Setting, TargetStanding, judge, standings};
 use crate::problem::Problem;
 
-use super::setting::setting;
-use super::words::Word;
+use super::setting::given;
+use super::words::Given;
 use super::{Context, Failure};
 
 /// One block of the day under some openings.
@@ -41,23 +41,23 @@ pub struct DayAnswer {
 /// day and each block's release is what the one well with open gates carries.
 ///
 /// # Errors
-/// As [`setting`].
+/// As [`given`].
 pub(super) fn day(
     context: &Context,
     perturbed: &Perturbed,
-    words: &[Word],
+    asked: &Given,
 ) -> Result<Option<(DayAnswer, Vec<Problem>)>, Failure> {
     let site = context.site();
-    let by_opening = !words.is_empty() && words.iter().all(|w| matches!(w, Word::Open(_)));
+    let by_opening = asked.flows.is_empty() && asked.totals.is_empty() && !asked.open.is_empty();
+    let by_opening = by_opening && asked.release_m3s.is_none();
     if site.blocks.is_empty() || !by_opening {
         return Ok(None);
     }
     let mut notes = Vec::new();
     let mut blocks = Vec::new();
     for (block, of) in site.blocks.iter().enumerate() {
-        let flow = format!("{} m3/s", of.flow_m3s);
-        let words: Vec<Word> = words.iter().copied().chain([Word::Release(&flow)]).collect();
-        let understood = setting(context, &words)?;
+        let of_block = Given { release_m3s: Some(of.flow_m3s), ..asked.clone() };
+        let understood = given(context, &of_block)?;
         notes = understood.notes;
         let date = context.on.date_naive();
         let Some(mix) = judge(site, &context.profile, perturbed, &understood.setting, date) else {

@@ -6,8 +6,8 @@ use crate::problem::Problem;
 
 use super::change::{Change, change};
 use super::day::{DayAnswer, day};
-use super::setting::{Understood, now_setting, setting};
-use super::words::Word;
+use super::setting::{Understood, given, now_setting};
+use super::words::{Given, Word};
 use super::{Context, Failure};
 
 /// The answer of `mix`.
@@ -32,32 +32,56 @@ pub struct MixAnswer {
 /// Words that cannot be understood or do not fit together; a gate above the water; a flow above capacity.
 pub fn mix(context: &Context, words: &[Word]) -> Result<MixAnswer, Failure> {
     let site = context.site();
-    let perturbed = Perturbed::new(site, &context.profile, context.age_days);
-    let of_day = day(context, &perturbed, words)?;
-    let longest = of_day.as_ref().and_then(|(day, notes)| {
-        let block = day.blocks.iter().rev().max_by(|a, b| a.share.total_cmp(&b.share))?;
-        Some(Understood { setting: block.setting.clone(), notes: notes.clone() })
-    });
-    let understood = if let Some(longest) = longest {
-        longest
-    } else if words.is_empty() {
-        now_setting(context).map_err(|failure| match failure {
-            Failure::Usage(why) => Failure::Usage(format!(
-                "no setting: give --set GATE=FLOW, or --open GATE=PERCENT with --release FLOW; of the setting now, {why}"
-            )),
-            other => other,
-        })?
-    } else {
-        setting(context, words)?
+    if !words.is_empty() {
+        return mix_given(context, &Given::typed(site, words, context.profile.pool_m)?);
+    }
+    let now = now_setting(context).map_err(|failure| match failure {
+        Failure::Usage(why) => Failure::Usage(format!(
+            "no setting: give --set GATE=FLOW, or --open GATE=PERCENT with --release FLOW; of the setting now, {why}"
+        )),
+        other => other,
+    })?;
+    answer(context, &perturbed(context), now, None)
+}
+
+/// What comes out of the setting that is given in numbers.
+///
+/// # Errors
+/// As [`mix`].
+pub fn mix_given(context: &Context, asked: &Given) -> Result<MixAnswer, Failure> {
+    let perturbed = perturbed(context);
+    let Some((day, notes)) = day(context, &perturbed, asked)? else {
+        return answer(context, &perturbed, given(context, asked)?, None);
     };
+    // the words above the day speak of its longest block
+    match day.blocks.iter().rev().max_by(|a, b| a.share.total_cmp(&b.share)) {
+        None => answer(context, &perturbed, given(context, asked)?, None),
+        Some(longest) => {
+            let longest = Understood { setting: longest.setting.clone(), notes };
+            answer(context, &perturbed, longest, Some(day))
+        }
+    }
+}
+
+fn perturbed(context: &Context) -> Perturbed {
+    Perturbed::new(context.site(), &context.profile, context.age_days)
+}
+
+fn answer(
+    context: &Context,
+    perturbed: &Perturbed,
+    understood: Understood,
+    day: Option<DayAnswer>,
+) -> Result<MixAnswer, Failure> {
+    let site = context.site();
     let date = context.on.date_naive();
-    let judged = judge(site, &context.profile, &perturbed, &understood.setting, date);
+    let judged = judge(site, &context.profile, perturbed, &understood.setting, date);
     let Some(mut mix) = judged else {
         let problem = Problem::refused("no-flow", "nothing flows in this setting", "give a flow above zero");
         return Err(Failure::Refused(vec![problem], context.system));
     };
     mix.warnings.extend(understood.notes);
-    let (now, why_not) = judged_now(context, &perturbed, &understood.setting);
+    let (now, why_not) = judged_now(context, perturbed, &understood.setting);
     mix.warnings.extend(why_not);
     let change = now.as_ref().map(|(now, was)| {
         let Blend { flow_m3s, temperature_c, .. } = was.release;
@@ -67,7 +91,6 @@ pub fn mix(context: &Context, words: &[Word]) -> Result<MixAnswer, Failure> {
         mix.add_limits(site, &context.profile.column, &understood.setting, checks);
         change
     });
-    let day = of_day.map(|(day, _)| day);
     if let Some(day) = &day {
         mix.targets.clone_from(&day.targets);
         mix.warnings.extend(other_blocks(day, &mix.warnings));

@@ -14,19 +14,23 @@ use crate::site::Site;
 use crate::units::{Dimension, System};
 
 mod change;
+mod changed;
 mod day;
 mod mix;
 mod pool;
 pub mod rank;
 mod setting;
+mod solve;
 mod words;
 
 pub use change::{Change, Move};
+pub use changed::Changed;
 pub use day::{BlockAnswer, DayAnswer};
-pub use mix::{MixAnswer, mix};
+pub use mix::{MixAnswer, mix, mix_given};
 pub use pool::{ColdWater, OutletState, PoolAnswer, pool};
-pub use setting::{Understood, now_setting, setting};
-pub use words::Word;
+pub use setting::{Understood, given, now_setting, setting};
+pub use solve::{Solved, preferred_c, solve};
+pub use words::{ByFlow, Given, Word};
 
 /// Why a task gave no answer.
 #[derive(Debug, Clone, PartialEq)]

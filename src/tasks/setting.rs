@@ -6,7 +6,7 @@ use crate::problem::Problem;
 use crate::site::{SAME_OPENING, Site};
 use crate::units::{Dimension, say};
 
-use super::words::{Given, Word};
+use super::words::{ByFlow, Given, Word};
 use super::{Context, Failure};
 
 /// A setting understood: its flows, and what was assumed on the way to them.
@@ -23,8 +23,7 @@ pub struct Understood {
 /// # Errors
 /// Words that cannot be understood or do not fit together; a gate above the water; a flow above capacity.
 pub fn setting(context: &Context, words: &[Word]) -> Result<Understood, Failure> {
-    let given = Given::typed(context.site(), words, context.profile.pool_m)?;
-    understood(context, &given)
+    given(context, &Given::typed(context.site(), words, context.profile.pool_m)?)
 }
 
 /// The setting now, as the site file gives it.
@@ -32,22 +31,36 @@ pub fn setting(context: &Context, words: &[Word]) -> Result<Understood, Failure>
 /// # Errors
 /// As [`setting`]; [`Failure::Usage`] too where there is none.
 pub fn now_setting(context: &Context) -> Result<Understood, Failure> {
-    let given = Given::now(context.site());
-    if given == Given::default() {
+    let now = Given::now(context.site());
+    if now == Given::default() {
         return Err(Failure::Usage("the site file gives none under `now`".into()));
     }
-    understood(context, &given)
+    given(context, &now)
 }
 
-fn understood(context: &Context, given: &Given) -> Result<Understood, Failure> {
+/// The setting that is given in numbers.
+///
+/// # Errors
+/// As [`setting`].
+pub fn given(context: &Context, given: &Given) -> Result<Understood, Failure> {
     let (site, pool_m) = (context.site(), context.profile.pool_m);
     let refused = |problems: Vec<Problem>| Err(Failure::Refused(problems, context.system));
     let totals = totals(site, given)?;
     let mut problems = impossible_totals(site, &totals);
     let mut asked = Asked { totals, ..Asked::default() };
     let mut notes = Vec::new();
-    let flow_of = |&(outlet, flow_m3s): &(usize, f64)| Gate { outlet, opening: 1.0, flow_m3s };
+    let flow_of = |&ByFlow { outlet, flow_m3s, opening }: &ByFlow| Gate {
+        outlet,
+        opening: opening.unwrap_or(1.0),
+        flow_m3s,
+    };
     asked.direct.extend(given.flows.iter().map(flow_of));
+    for g in &given.flows {
+        notes.extend(g.opening.and_then(|opening| not_a_position(site, g.outlet, opening)));
+        if g.opening.is_some_and(|opening| opening <= 0.0) && g.flow_m3s > 0.0 {
+            problems.push(shut_with_flow(site, g.outlet));
+        }
+    }
     let mut by_opening = Vec::new();
     for &(outlet, opening) in &given.open {
         let o = &site.outlets[outlet];
@@ -63,7 +76,9 @@ fn understood(context: &Context, given: &Given) -> Result<Understood, Failure> {
         }
     }
     spill(site, pool_m, &mut asked);
-    notes.extend(assumed_open(site, &asked.direct, &by_opening));
+    let mut told = by_opening.clone();
+    told.extend(given.flows.iter().filter(|g| g.opening.is_some()).map(|g| g.outlet));
+    notes.extend(assumed_open(site, &asked.direct, &told));
     notes.extend(flow_computed(site, &by_opening));
     // a gate above the water is no port of its well, so it is told before the wells share out
     let mut gates = asked.direct.clone();
@@ -80,7 +95,7 @@ fn understood(context: &Context, given: &Given) -> Result<Understood, Failure> {
 /// Totals of the wells, once it is sure that each gate and each well is set in one way.
 fn totals(site: &Site, given: &Given) -> Result<Vec<(usize, f64)>, Failure> {
     let usage = |words: String| Err(Failure::Usage(words));
-    if let Some(&(outlet, _)) = given.open.iter().find(|(o, _)| given.flows.iter().any(|(f, _)| f == o)) {
+    if let Some(&(outlet, _)) = given.open.iter().find(|(o, _)| given.flows.iter().any(|g| g.outlet == *o)) {
         let name = &site.outlets[outlet].name;
         return usage(format!("`{name}` is given a flow and an opening; give one of them"));
     }
@@ -104,7 +119,8 @@ fn totals(site: &Site, given: &Given) -> Result<Vec<(usize, f64)>, Failure> {
     for (index, well) in site.wells.iter().enumerate() {
         let name = &well.name;
         let total = totals.iter().any(|t| t.0 == index);
-        let by_flow = given.flows.iter().find(is_on(index)).map(|g| &site.outlets[g.0].name);
+        let by_flow = given.flows.iter().find(|g| site.outlets[g.outlet].well == Some(index));
+        let by_flow = by_flow.map(|g| &site.outlets[g.outlet].name);
         let open = opened.contains(&index);
         match (total, open, by_flow) {
             (_, true, Some(gate)) => {
@@ -184,6 +200,11 @@ fn spill(site: &Site, pool_m: f64, asked: &mut Asked) {
             }
         }
     }
+}
+
+fn shut_with_flow(site: &Site, outlet: usize) -> Problem {
+    let words = format!("`{}` is shut and given a flow", site.outlets[outlet].name);
+    Problem::refused("opening", words, "open it, or give it no flow")
 }
 
 /// Gates set by flow alone are taken fully open, and the output says so.

@@ -9,7 +9,8 @@ use super::Failure;
 /// One word of a setting, with what was typed after its option.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub enum Word<'a> {
-    /// `--set`: the flow of an outlet or the total of a well; a crest that spills by itself by name alone.
+    /// `--set`: the flow of an outlet, its opening after an `@` where it is not fully open, or the total of a well; a
+    /// crest that spills by itself by name alone.
     Set(&'a str),
     /// `--open`: a gate and its opening, percent or the name of a position.
     Open(&'a str),
@@ -19,22 +20,39 @@ pub enum Word<'a> {
     Now(&'a str),
 }
 
+/// An outlet with a flow that is metered or regulated elsewhere.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct ByFlow {
+    /// Index of the outlet.
+    pub outlet: usize,
+    /// Flow, m3/s.
+    pub flow_m3s: f64,
+    /// How far it stands open, 0 to 1; `None`: fully, and the output says so.
+    pub opening: Option<f64>,
+}
+
 /// What a setting says, before it is known whether it is one: outlets and wells by index, m3/s, openings 0 to 1.
 #[derive(Debug, Clone, Default, PartialEq)]
-pub(super) struct Given {
-    pub(super) flows: Vec<(usize, f64)>,
-    pub(super) open: Vec<(usize, f64)>,
-    pub(super) totals: Vec<(usize, f64)>,
-    pub(super) release_m3s: Option<f64>,
+pub struct Given {
+    /// Outlets with a flow.
+    pub flows: Vec<ByFlow>,
+    /// Outlets with an opening alone.
+    pub open: Vec<(usize, f64)>,
+    /// Wells with a total.
+    pub totals: Vec<(usize, f64)>,
+    /// The total of the one well that has open gates.
+    pub release_m3s: Option<f64>,
 }
 
 impl Given {
     /// What the site file gives under `now`.
-    pub(super) fn now(site: &Site) -> Self {
+    pub fn now(site: &Site) -> Self {
         let mut given = Self::default();
         for &(outlet, set) in &site.now {
             match set {
-                SetNow::Flow(flow_m3s) if flow_m3s > 0.0 => given.flows.push((outlet, flow_m3s)),
+                SetNow::Flow(flow_m3s) if flow_m3s > 0.0 => {
+                    given.flows.push(ByFlow { outlet, flow_m3s, opening: None });
+                }
                 SetNow::Flow(_) => {}
                 SetNow::Opening(opening) => given.open.push((outlet, opening)),
             }
@@ -47,7 +65,7 @@ impl Given {
     ///
     /// # Errors
     /// [`Failure::Usage`]: an unknown gate, no number, a gate or total twice.
-    pub(super) fn typed(site: &Site, words: &[Word], pool_m: f64) -> Result<Self, Failure> {
+    pub fn typed(site: &Site, words: &[Word], pool_m: f64) -> Result<Self, Failure> {
         let mut given = Self::default();
         for word in words {
             word.read(site, pool_m, &mut given).map_err(|why| {
@@ -59,10 +77,10 @@ impl Given {
     }
 
     /// The order in which it was given shows nowhere.
-    fn by_name(mut self, site: &Site) -> Self {
-        for gates in [&mut self.flows, &mut self.open] {
-            gates.sort_by_key(|g| &site.outlets[g.0].name);
-        }
+    #[must_use]
+    pub fn by_name(mut self, site: &Site) -> Self {
+        self.flows.sort_by_key(|g| &site.outlets[g.outlet].name);
+        self.open.sort_by_key(|g| &site.outlets[g.0].name);
         self.totals.sort_by_key(|t| &site.wells[t.0].name);
         self
     }
@@ -98,10 +116,20 @@ impl Word<'_> {
                 Self::Set(_) | Self::Release(_) => false,
             };
             if by_opening {
-                put(&mut given.open, outlet, opening(site, outlet, name, value)?, name, "opened")
-            } else {
-                put(&mut given.flows, outlet, outlet_flow(site, outlet, name, value, pool_m)?, name, "set")
+                return put(&mut given.open, outlet, opening(site, outlet, name, value)?, name, "opened");
             }
+            if given.flows.iter().any(|g| g.outlet == outlet) {
+                return Err(format!("`{name}` is set twice"));
+            }
+            let (value, stands) = match value.and_then(|v| v.split_once('@')) {
+                Some((flow, stands)) => {
+                    (Some(flow.trim()), Some(opening(site, outlet, name, Some(stands.trim()))?))
+                }
+                None => (value, None),
+            };
+            let flow_m3s = outlet_flow(site, outlet, name, value, pool_m)?;
+            given.flows.push(ByFlow { outlet, flow_m3s, opening: stands });
+            Ok(())
         } else if let Some(well) = site.well(name) {
             match (self, value) {
                 (Self::Open(_), _) => Err(format!("`{name}` is a well; open its gates")),

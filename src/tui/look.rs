@@ -102,6 +102,14 @@ const PURPLE: Color = Color::Indexed(175);
 const YELLOW: Color = Color::Indexed(227);
 
 impl Look {
+    /// The same with [`Theme::Auto`] settled by what the terminal says of itself. Where that is that it has no colours,
+    /// nothing the user likes gives it any.
+    #[must_use]
+    pub fn settled(self, terminal: Theme) -> Self {
+        let theme = if self.theme == Theme::Auto || terminal == Theme::Mono { terminal } else { self.theme };
+        Self { theme, ..self }
+    }
+
     /// The style of a meaning.
     pub fn style(self, role: Role) -> Style {
         let plain = Style::new();

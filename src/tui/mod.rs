@@ -1,6 +1,15 @@
 //! The screens. A key becomes a message, a message changes the model, the model is drawn.
 
 pub mod draw;
+mod keys;
 mod look;
+pub mod model;
+mod update;
+mod view;
+mod work;
 
+pub use keys::{Action, Binding, Place, TABLE};
 pub use look::{Look, Role, Symbols, Theme};
+pub use update::{Effect, Event, begin, places, update};
+pub use view::{Hit, draw as draw_model, hit};
+pub use work::{Anew, Computed, Done, Lane, On, Sent, Work};

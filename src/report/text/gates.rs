@@ -13,7 +13,7 @@ use super::flow;
 
 /// Each open gate with its opening, by name; an outlet that passes any flow with its flow, or one for each part of
 /// the day, in the unit of the heading.
-pub(super) fn openings(context: &Context, shown: &Shown) -> Vec<String> {
+pub fn openings(context: &Context, shown: &Shown) -> Vec<String> {
     let parts: Vec<&[Gate]> = shown.parts.iter().map(|p| p.setting.gates.as_slice()).collect();
     named(context, &parts)
 }
@@ -62,7 +62,7 @@ fn opening(outlet: &Outlet, opening: f64) -> String {
 }
 
 /// What to set in a part of the day: each well's total with its open gates, and each outlet on none.
-pub(super) fn instruction(context: &Context, part: &ShownPart) -> String {
+pub fn instruction(context: &Context, part: &ShownPart) -> String {
     let (site, system) = (context.site(), context.system);
     let gates = &part.setting.gates;
     let mut out: Vec<String> = Vec::new();
@@ -89,7 +89,7 @@ pub(super) fn instruction(context: &Context, part: &ShownPart) -> String {
 }
 
 /// Which gates move, from where to where, and from which day the crew can.
-pub(super) fn moves(context: &Context, change: &Change) -> String {
+pub fn moves(context: &Context, change: &Change) -> String {
     let stand = |o: &Outlet, open: f64, flow_m3s: f64| {
         if open <= 0.0 {
             "shut".to_owned()

@@ -81,7 +81,7 @@ pub(super) fn not_checked(answer: &MixAnswer) -> String {
 }
 
 /// What is set, for each gate: `N3 600 cfs`, or `N3 50 % 600 cfs` where it is not known to be fully open.
-fn setting_words(site: &Site, setting: &Setting, system: System) -> String {
+pub fn setting_words(site: &Site, setting: &Setting, system: System) -> String {
     let mut gates: Vec<(&Outlet, &Gate)> =
         setting.gates.iter().filter_map(|g| Some((site.outlets.get(g.outlet)?, g))).collect();
     gates.sort_by(|a, b| a.0.name.cmp(&b.0.name));
@@ -123,7 +123,8 @@ fn wells(site: &Site, setting: &Setting, system: System) -> String {
     out
 }
 
-fn release_line(mix: &Mix, system: System) -> String {
+/// Temperature and oxygen of a release with their bands: `54.6 F (53.5 to 56.1), oxygen 7.1 mg/L (6.3 to 7.9)`.
+pub fn release_line(mix: &Mix, system: System) -> String {
     let unit = system.unit(Dimension::Temperature);
     let ends = |band: Option<(f64, f64)>, digits: &dyn Fn(f64) -> String| {
         band.map_or_else(
@@ -146,6 +147,12 @@ fn release_line(mix: &Mix, system: System) -> String {
 fn against_now(site: &Site, now: &Setting, was: &Mix, tried: &Mix, system: System) -> String {
     let mut out = labelled("Now", &setting_words(site, now, system));
     out.push_str(&labelled("", &release_line(was, system)));
+    out.push_str(&labelled("", &format!("against now: {}", difference(was, tried, system))));
+    out
+}
+
+/// What differs from one mix to another: `temperature 1.7 F colder, oxygen 0.1 mg/L lower`.
+pub fn difference(was: &Mix, tried: &Mix, system: System) -> String {
     let shown = |by: f64, unit: &str, words: [&str; 2]| {
         if by.abs() < 0.05 {
             "the same to a tenth".to_owned()
@@ -155,16 +162,15 @@ fn against_now(site: &Site, now: &Setting, was: &Mix, tried: &Mix, system: Syste
     };
     let unit = system.unit(Dimension::TemperatureDifference);
     let warmer = unit.from_si(tried.release.temperature_c - was.release.temperature_c);
-    let mut words =
-        format!("against now: temperature {}", shown(warmer, unit.symbol(), ["warmer", "colder"]));
+    let mut words = format!("temperature {}", shown(warmer, unit.symbol(), ["warmer", "colder"]));
     if let Some((a, b)) = tried.release.oxygen_mg_l.zip(was.release.oxygen_mg_l) {
         let _ = write!(words, ", oxygen {}", shown(a - b, "mg/L", ["higher", "lower"]));
     }
-    out.push_str(&labelled("", &words));
-    out
+    words
 }
 
-pub(super) fn range(rule: &Target, system: System) -> String {
+/// A target in words: `48.0 to 56.0 F, preferred 52.0 F, oxygen at least 7.0 mg/L`.
+pub fn range(rule: &Target, system: System) -> String {
     let unit = system.unit(Dimension::Temperature);
     let mut parts = Vec::new();
     match (rule.low_c, rule.high_c) {
@@ -193,7 +199,8 @@ fn missed(standing: Standing, by: f64, unit: &str) -> String {
     format!("{} by {amount}", standing.word().to_uppercase())
 }
 
-fn standing_words(s: &TargetStanding, rule: &Target, system: System) -> String {
+/// How the release stands against a target: `temperature ABOVE by 0.4 F, oxygen inside`.
+pub fn standing_words(s: &TargetStanding, rule: &Target, system: System) -> String {
     let unit = system.unit(Dimension::TemperatureDifference);
     let warm = match s.temperature {
         (Standing::Unknown, _) => None,

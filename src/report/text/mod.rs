@@ -14,7 +14,11 @@ use crate::tasks::rank::RankAnswer;
 use crate::tasks::{Context, Freshness, MixAnswer, PoolAnswer};
 use crate::units::{Dimension, System, show};
 
-use super::column::{drawn_column, fitted};
+pub use gates::{instruction, moves, openings};
+pub use mix::{difference, range, release_line, setting_words, standing_words};
+
+use super::column::drawn_column;
+use super::fitted;
 use super::sentence::{caution, flags_of};
 
 /// Width text is wrapped at.

@@ -3,16 +3,12 @@
 
 use crate::mix::{Asked, Gate};
 use crate::rank::{Criterion, Progress, Question, Ranked, Ranking, rank as search};
-use crate::target::Target;
+use crate::tasks::solve::{preferred_c, roots};
 
 use super::kitchen::Kitchen;
 use super::reasons::{behind, reasons};
 use super::shown::Shown;
 
-/// Shares of two parts between which roots are sought (choice).
-const PLACES: u32 = 40;
-/// Halvings of a root.
-const HALVINGS: usize = 40;
 /// Steps of the search for the least release (choice: splits of 10 %).
 const LEAST_STEPS: usize = 10;
 /// Releases tried before the least is drawn in, and halvings after (choice).
@@ -199,16 +195,10 @@ impl Answers<'_> {
         (apart_c, apart_mg_l)
     }
 
-    /// The rule valid on the date that prefers a temperature.
-    fn preferred_c(&self) -> Option<f64> {
-        let valid = |t: &&Target| t.span.contains(self.question.date);
-        self.question.site.targets.iter().filter(valid).find_map(|t| t.preferred_c)
-    }
-
     /// The exact split of two parts that gives the preferred temperature, every other part kept: of the first mix in
     /// the order that has two, its two largest. Only for a steady day.
     pub(super) fn preferred_split(&self) -> Option<PreferredSplit> {
-        let preferred_c = self.preferred_c()?;
+        let preferred_c = preferred_c(self.kitchen.context)?;
         if self.question.blocks.len() > 1 {
             return None;
         }
@@ -224,38 +214,7 @@ impl Answers<'_> {
             let asked = with(asked, between, [both * share, both * (1.0 - share)]);
             self.kitchen.water(&self.kitchen.resolved(&asked))
         };
-        let places: Vec<(f64, (f64, Option<f64>))> = (0..=PLACES)
-            .filter_map(|i| {
-                let share = f64::from(i) / f64::from(PLACES);
-                Some((share, water(share)?))
-            })
-            .collect();
-        let mut roots = Vec::new();
-        let mut root = |share: f64| {
-            if let Some((temperature_c, oxygen_mg_l)) = water(share) {
-                let flows_m3s = [both * share, both * (1.0 - share)];
-                roots.push(Root { share, flows_m3s, temperature_c, oxygen_mg_l });
-            }
-        };
-        for pair in places.windows(2) {
-            let [(mut low, (at_low, _)), (mut high, (at_high, _))] = [pair[0], pair[1]];
-            let (at_low, at_high) = (at_low - preferred_c, at_high - preferred_c);
-            if at_low.abs() < 1e-12 {
-                root(low);
-            } else if at_low * at_high < 0.0 {
-                for _ in 0..HALVINGS {
-                    let middle = 0.5 * (low + high);
-                    match water(middle) {
-                        Some((t, _)) if (t - preferred_c) * at_low > 0.0 => low = middle,
-                        _ => high = middle,
-                    }
-                }
-                root(0.5 * (low + high));
-            }
-        }
-        let temperatures = || places.iter().map(|p| p.1.0);
-        let bracket_c =
-            [temperatures().fold(f64::INFINITY, f64::min), temperatures().fold(f64::NEG_INFINITY, f64::max)];
+        let (roots, bracket_c) = roots(&water, both, preferred_c);
         Some(PreferredSplit { gates: self.kitchen.gates(mix), between, preferred_c, roots, bracket_c })
     }
 

@@ -1,0 +1,293 @@
+//! The one table of keys: what each does where. Hints and help are made from it.
+
+use crossterm::event::{KeyCode, KeyEvent, KeyEventKind, KeyModifiers};
+
+/// What a key asks for.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Action {
+    /// Leave the program.
+    Quit,
+    /// Stop the program for the shell.
+    Suspend,
+    /// Help.
+    Help,
+    /// Settings.
+    Settings,
+    /// Copy the answer.
+    Copy,
+    /// Choose another site.
+    Sites,
+    /// Back, or stop computing.
+    Back,
+    /// A screen by its number, from 1.
+    Screen(usize),
+    /// The screen after this.
+    NextScreen,
+    /// The screen before this.
+    PreviousScreen,
+    /// One row up.
+    Up,
+    /// One row down.
+    Down,
+    /// One cell left.
+    Left,
+    /// One cell right.
+    Right,
+    /// A page up.
+    PageUp,
+    /// A page down.
+    PageDown,
+    /// To the first.
+    First,
+    /// To the last.
+    Last,
+    /// Take, or type into.
+    Enter,
+    /// A step more.
+    More,
+    /// A step less.
+    Less,
+    /// A large step more.
+    MuchMore,
+    /// A large step less.
+    MuchLess,
+    /// Open or shut; take in or leave out.
+    Toggle,
+    /// The one before, of casts or tries.
+    Before,
+    /// The one after.
+    After,
+    /// Lay this cast over the one used.
+    Overlay,
+    /// Work with this cast.
+    UseCast,
+    /// Type a threshold of cold water.
+    Colder,
+    /// Take the last change back.
+    Undo,
+    /// Make it again.
+    Redo,
+    /// Solve for the preferred temperature.
+    Solve,
+    /// Keep this try and begin another like it.
+    NewTry,
+    /// Drop this try.
+    DropTry,
+    /// Compare with another try.
+    Compare,
+    /// Begin again from the setting now.
+    Reset,
+    /// What is rejected.
+    Rejected,
+    /// Lost-gate drill.
+    Drill,
+    /// Order of the criteria.
+    Order,
+    /// Type the release.
+    Release,
+    /// Begin a new site.
+    NewSite,
+}
+
+/// Where a key works.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Place {
+    /// Wherever nothing is being typed.
+    Everywhere,
+    /// Every screen of a site.
+    Site,
+    /// The pool screen.
+    Pool,
+    /// The mix screen.
+    Mix,
+    /// The rank screen.
+    Rank,
+    /// The list of sites.
+    Sites,
+    /// The list of problems of a broken site.
+    Problems,
+    /// Lists laid over a screen.
+    List,
+    /// While typing.
+    Field,
+}
+
+impl Place {
+    /// Every place with its heading in the help.
+    pub const HEADINGS: [(Self, &'static str); 9] = [
+        (Self::Everywhere, "everywhere"),
+        (Self::Site, "every screen"),
+        (Self::Pool, "pool"),
+        (Self::Mix, "mix"),
+        (Self::Rank, "rank"),
+        (Self::Sites, "list of sites"),
+        (Self::Problems, "problems of the files"),
+        (Self::List, "lists and settings"),
+        (Self::Field, "while typing"),
+    ];
+}
+
+/// One line of the table.
+#[derive(Debug, Clone, Copy)]
+pub struct Binding {
+    /// Where it works.
+    pub place: Place,
+    /// The key.
+    pub key: KeyCode,
+    /// Whether Ctrl is held.
+    pub ctrl: bool,
+    /// The key as it is shown; empty for a second key of an action.
+    pub shown: &'static str,
+    /// The short word in the hints; empty where help alone tells it.
+    pub hint: &'static str,
+    /// What it does, in the help.
+    pub words: &'static str,
+    /// What it asks for.
+    pub action: Action,
+}
+
+const fn on(place: Place, key: KeyCode, shown: &'static str, hint: &'static str, words: &'static str, action: Action) -> Binding {
+    Binding { place, key, ctrl: false, shown, hint, words, action }
+}
+
+const fn ctrl(key: char, shown: &'static str, words: &'static str, action: Action) -> Binding {
+    Binding { place: Place::Everywhere, key: KeyCode::Char(key), ctrl: true, shown, hint: "", words, action }
+}
+
+use Action as A;
+use KeyCode::Char;
+use Place as P;
+
+/// The table.
+pub const TABLE: &[Binding] = &[
+    on(P::Everywhere, Char('?'), "?", "help", "this help", A::Help),
+    on(P::Everywhere, Char('q'), "q", "quit", "quit", A::Quit),
+    ctrl('c', "Ctrl-C", "quit, also while typing", A::Quit),
+    ctrl('z', "Ctrl-Z", "to the shell; fg comes back", A::Suspend),
+    on(P::Everywhere, KeyCode::Esc, "Esc", "", "back; stops computing", A::Back),
+    on(P::Everywhere, Char(','), ",", "", "settings: units, symbols, colours, mouse", A::Settings),
+    on(P::Site, Char('1'), "1-3", "", "pool, mix, rank", A::Screen(1)),
+    on(P::Site, Char('2'), "", "", "", A::Screen(2)),
+    on(P::Site, Char('3'), "", "", "", A::Screen(3)),
+    on(P::Site, KeyCode::Tab, "Tab", "", "the next screen", A::NextScreen),
+    on(P::Site, KeyCode::BackTab, "", "", "", A::PreviousScreen),
+    on(P::Site, Char('y'), "y", "", "copy this answer to the clipboard of the terminal", A::Copy),
+    on(P::Site, Char('o'), "o", "", "open another site", A::Sites),
+    on(P::Pool, KeyCode::Up, "Up Down", "read", "read the water at an elevation", A::Up),
+    on(P::Pool, KeyCode::Down, "", "", "", A::Down),
+    on(P::Pool, Char('['), "[ ]", "casts", "the cast before, the cast after", A::Before),
+    on(P::Pool, Char(']'), "", "", "", A::After),
+    on(P::Pool, Char('l'), "l", "lay over", "lay this cast over the others, or take it off", A::Overlay),
+    on(P::Pool, Char('w'), "w", "work with", "work with the cast looked at", A::UseCast),
+    on(P::Pool, Char('c'), "c", "colder than", "volume colder than a temperature you type", A::Colder),
+    on(P::Pool, KeyCode::PageUp, "PgUp PgDn", "", "scroll the flags", A::PageUp),
+    on(P::Pool, KeyCode::PageDown, "", "", "", A::PageDown),
+    on(P::Pool, KeyCode::Home, "Home End", "", "surface, bed", A::First),
+    on(P::Pool, KeyCode::End, "", "", "", A::Last),
+    on(P::Mix, KeyCode::Up, "Arrows", "choose", "choose what to change", A::Up),
+    on(P::Mix, KeyCode::Down, "", "", "", A::Down),
+    on(P::Mix, KeyCode::Left, "", "", "", A::Left),
+    on(P::Mix, KeyCode::Right, "", "", "", A::Right),
+    on(P::Mix, Char('+'), "+ -", "turn", "a step more, a step less", A::More),
+    on(P::Mix, Char('='), "", "", "", A::More),
+    on(P::Mix, Char('-'), "", "", "", A::Less),
+    on(P::Mix, Char('>'), "> <", "", "a large step more, less", A::MuchMore),
+    on(P::Mix, Char('<'), "", "", "", A::MuchLess),
+    on(P::Mix, Char('.'), "", "", "", A::MuchMore),
+    on(P::Mix, KeyCode::Enter, "Enter", "type", "type a value, with a unit or without", A::Enter),
+    on(P::Mix, Char(' '), "Space", "open/shut", "open the gate fully, or shut it", A::Toggle),
+    on(P::Mix, Char('u'), "u", "undo", "take the last change back", A::Undo),
+    on(P::Mix, Char('r'), "r", "redo", "make it again", A::Redo),
+    on(P::Mix, Char('p'), "p", "solve", "split the two largest flows for the preferred temperature", A::Solve),
+    on(P::Mix, Char('n'), "n", "keep", "keep this try and begin another like it", A::NewTry),
+    on(P::Mix, Char('['), "[ ]", "tries", "the try before, the try after", A::Before),
+    on(P::Mix, Char(']'), "", "", "", A::After),
+    on(P::Mix, Char('c'), "c", "compare", "compare with the next try, side by side", A::Compare),
+    on(P::Mix, Char('d'), "d", "", "drop this try", A::DropTry),
+    on(P::Mix, Char('z'), "z", "", "begin again from what is set now", A::Reset),
+    on(P::Mix, KeyCode::PageUp, "PgUp PgDn", "", "scroll what is said of the mix", A::PageUp),
+    on(P::Mix, KeyCode::PageDown, "", "", "", A::PageDown),
+    on(P::Rank, KeyCode::Up, "Up Down", "choose", "choose a mix", A::Up),
+    on(P::Rank, KeyCode::Down, "", "", "", A::Down),
+    on(P::Rank, KeyCode::Enter, "Enter", "take", "take the mix to the mix screen", A::Enter),
+    on(P::Rank, Char('x'), "x", "rejected", "what is rejected, and by how much; and back", A::Rejected),
+    on(P::Rank, Char('l'), "l", "lost gate", "lost-gate drill: rank without gates you choose", A::Drill),
+    on(P::Rank, Char('c'), "c", "criteria", "order the criteria", A::Order),
+    on(P::Rank, Char('t'), "t", "release", "type the total release", A::Release),
+    on(P::Rank, KeyCode::PageUp, "PgUp PgDn", "", "a page of the list", A::PageUp),
+    on(P::Rank, KeyCode::PageDown, "", "", "", A::PageDown),
+    on(P::Rank, KeyCode::Home, "Home End", "", "the first, the last", A::First),
+    on(P::Rank, KeyCode::End, "", "", "", A::Last),
+    on(P::Sites, KeyCode::Up, "Up Down", "choose", "choose a site", A::Up),
+    on(P::Sites, KeyCode::Down, "", "", "", A::Down),
+    on(P::Sites, KeyCode::Enter, "Enter", "open", "open it", A::Enter),
+    on(P::Sites, Char('n'), "n", "new site", "begin a new site from a template", A::NewSite),
+    on(P::Problems, KeyCode::Up, "Up Down", "scroll", "scroll", A::Up),
+    on(P::Problems, KeyCode::Down, "", "", "", A::Down),
+    on(P::Problems, KeyCode::PageUp, "", "", "", A::PageUp),
+    on(P::Problems, KeyCode::PageDown, "", "", "", A::PageDown),
+    on(P::Problems, Char('o'), "o", "other site", "open another site", A::Sites),
+    on(P::List, KeyCode::Up, "Up Down", "choose", "choose a line", A::Up),
+    on(P::List, KeyCode::Down, "", "", "", A::Down),
+    on(P::List, KeyCode::PageUp, "PgUp PgDn", "", "scroll", A::PageUp),
+    on(P::List, KeyCode::PageDown, "", "", "", A::PageDown),
+    on(P::List, Char(' '), "Space", "change", "change it", A::Toggle),
+    on(P::List, Char('+'), "+ -", "", "further up or down in the order", A::More),
+    on(P::List, Char('='), "", "", "", A::More),
+    on(P::List, Char('-'), "", "", "", A::Less),
+    on(P::List, KeyCode::Enter, "Enter", "done", "done", A::Enter),
+    on(P::Field, KeyCode::Enter, "Enter", "set", "set it", A::Enter),
+    on(P::Field, KeyCode::Esc, "Esc", "leave as it was", "leave it as it was", A::Back),
+];
+
+/// What a key asks for in the first of some places that knows it. A key let go asks for nothing.
+pub fn action(event: &KeyEvent, places: &[Place]) -> Option<Action> {
+    if event.kind == KeyEventKind::Release {
+        return None;
+    }
+    let held = event.modifiers.contains(KeyModifiers::CONTROL);
+    let other = event.modifiers.intersects(KeyModifiers::ALT | KeyModifiers::SUPER);
+    let is = |b: &&Binding| b.key == event.code && b.ctrl == held && !other;
+    places.iter().find_map(|place| TABLE.iter().filter(|b| b.place == *place).find(is)).map(|b| b.action)
+}
+
+/// Hints for some places, the first first: key and word.
+pub fn hints(places: &[Place]) -> Vec<(&'static str, &'static str)> {
+    let of = |place: &Place| {
+        let place = *place;
+        TABLE.iter().filter(move |b| b.place == place && !b.hint.is_empty())
+    };
+    places.iter().flat_map(of).map(|b| (b.shown, b.hint)).collect()
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn law_no_key_stands_twice_in_a_place() {
+        for (i, a) in TABLE.iter().enumerate() {
+            for b in &TABLE[i + 1..] {
+                let same = a.place == b.place && a.key == b.key && a.ctrl == b.ctrl;
+                assert!(!same, "{:?} {:?} stands twice", a.place, a.key);
+            }
+        }
+    }
+
+    #[test]
+    fn law_every_action_of_a_place_is_told() {
+        // a key without words shares the line of another that has them, just before it
+        for pair in TABLE.windows(2) {
+            assert!(!pair[1].words.is_empty() || pair[0].place == pair[1].place, "{:?}", pair[1].key);
+        }
+        assert!(Place::HEADINGS.iter().all(|(p, _)| TABLE.iter().any(|b| b.place == *p)));
+    }
+
+    #[test]
+    fn scenario_a_key_let_go_asks_for_nothing() {
+        let mut event = KeyEvent::new(Char('q'), KeyModifiers::NONE);
+        assert_eq!(action(&event, &[Place::Pool, Place::Everywhere]), Some(Action::Quit));
+        event.kind = KeyEventKind::Release;
+        assert_eq!(action(&event, &[Place::Pool, Place::Everywhere]), None);
+    }
+}

@@ -1,0 +1,98 @@
+//! What the user changes, as one value: every change makes a new one, so that any can be taken back.
+
+use crate::rank::Criterion;
+use crate::tasks::{Changed, Given};
+
+/// Changes kept for undo (choice).
+const KEPT: usize = 200;
+
+/// Everything the user changes on the screens.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Draft {
+    /// Pool, date and targets where they differ from the files.
+    pub changed: Changed,
+    /// Total release to rank at, m3/s; the site's own when absent.
+    pub release_m3s: Option<f64>,
+    /// Order of the criteria.
+    pub order: Vec<Criterion>,
+    /// Outlets the ranking leaves out.
+    pub without: Vec<usize>,
+    /// Settings tried; a well may keep a total while all its gates are shut.
+    pub tries: Vec<Given>,
+    /// The one on the board.
+    pub at: usize,
+    /// The one beside it.
+    pub beside: Option<usize>,
+}
+
+impl Draft {
+    /// Nothing changed, the setting now tried.
+    pub fn begin(now: Given) -> Self {
+        Self {
+            changed: Changed::default(),
+            release_m3s: None,
+            order: Criterion::NAMES.map(|c| c.1).to_vec(),
+            without: Vec::new(),
+            tries: vec![now],
+            at: 0,
+            beside: None,
+        }
+    }
+
+    /// The setting on the board.
+    pub fn tried(&self) -> Option<&Given> {
+        self.tries.get(self.at)
+    }
+
+    /// The setting on the board, to be changed.
+    pub fn tried_mut(&mut self) -> Option<&mut Given> {
+        self.tries.get_mut(self.at)
+    }
+}
+
+/// A draft with those before it and those taken back.
+#[derive(Debug, Clone)]
+pub struct History {
+    past: Vec<Draft>,
+    now: Draft,
+    future: Vec<Draft>,
+}
+
+impl History {
+    /// Begins with a draft.
+    pub fn begin(draft: Draft) -> Self {
+        Self { past: Vec::new(), now: draft, future: Vec::new() }
+    }
+
+    /// The draft.
+    pub fn now(&self) -> &Draft {
+        &self.now
+    }
+
+    /// Takes a new draft; whether it differs from the last.
+    pub fn change(&mut self, draft: Draft) -> bool {
+        if draft == self.now {
+            return false;
+        }
+        self.past.push(std::mem::replace(&mut self.now, draft));
+        if self.past.len() > KEPT {
+            self.past.remove(0);
+        }
+        self.future.clear();
+        true
+    }
+
+    /// Takes the last change back; whether there was one.
+    pub fn undo(&mut self) -> bool {
+        let Some(before) = self.past.pop() else { return false };
+        self.future.push(std::mem::replace(&mut self.now, before));
+        true
+    }
+
+    /// Makes it again; whether there was one.
+    pub fn redo(&mut self) -> bool {
+        let Some(after) = self.future.pop() else { return false };
+        self.past.push(std::mem::replace(&mut self.now, after));
+        true
+    }
+}

@@ -1,0 +1,123 @@
+//! What is being typed: checked at every key, taken when it is whole.
+
+use chrono::{DateTime, FixedOffset};
+use tui_input::Input;
+
+use crate::files::cast::parse_time;
+use crate::site::{Outlet, Site};
+use crate::tasks::Context;
+use crate::units::{Dimension, System, parse};
+
+use super::board::Cell;
+
+/// What a field is for.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Typed {
+    /// A cell of the board.
+    Cell(Cell),
+    /// A threshold of cold water.
+    Colder,
+    /// The total release of the ranking.
+    Release,
+    /// The folder of a new site.
+    NewSite,
+}
+
+/// A value that was typed.
+#[derive(Debug, Clone, PartialEq)]
+pub enum Value {
+    /// A number in SI; an opening 0 to 1. `None` takes a bound away.
+    Number(Option<f64>),
+    /// A moment.
+    Moment(DateTime<FixedOffset>),
+    /// Words.
+    Words(String),
+}
+
+/// A field.
+#[derive(Debug, Clone)]
+pub struct Field {
+    /// What it is for.
+    pub typed: Typed,
+    /// What stands in it.
+    pub input: Input,
+    /// What is wrong with that.
+    pub wrong: Option<String>,
+}
+
+impl Field {
+    /// A field that holds some text.
+    pub fn new(typed: Typed, text: String) -> Self {
+        Self { typed, input: Input::new(text), wrong: None }
+    }
+
+    /// What was typed, understood; a bare number is in the units shown.
+    ///
+    /// # Errors
+    /// What is wrong with it, in words.
+    pub fn value(&self, context: Option<&Context>, system: System) -> Result<Value, String> {
+        let text = self.input.value().trim();
+        let number = |dimension: Dimension| {
+            parse(text, dimension, system.unit(dimension)).map_err(|error| error.to_string())
+        };
+        let above_zero = |value: f64, what: &str| {
+            if value < 0.0 { Err(format!("{what} cannot be negative")) } else { Ok(Value::Number(Some(value))) }
+        };
+        let bound = |dimension: Dimension| {
+            if text.is_empty() { Ok(Value::Number(None)) } else { number(dimension).map(|v| Value::Number(Some(v))) }
+        };
+        match self.typed {
+            Typed::NewSite if text.is_empty() => Err("type the name of a folder".into()),
+            Typed::NewSite => Ok(Value::Words(text.to_owned())),
+            Typed::Colder => number(Dimension::Temperature).map(|v| Value::Number(Some(v))),
+            Typed::Release => match number(Dimension::Flow)? {
+                flow if flow > 0.0 => Ok(Value::Number(Some(flow))),
+                _ => Err("give a flow above zero".into()),
+            },
+            Typed::Cell(cell) => match cell {
+                Cell::Opening(i) => match context.and_then(|c| c.site().outlets.get(i)) {
+                    Some(outlet) => opening(outlet, text),
+                    None => Err("there is no such gate".into()),
+                },
+                Cell::Flow(_) | Cell::Total(_) | Cell::Release => {
+                    number(Dimension::Flow).and_then(|v| above_zero(v, "a flow"))
+                }
+                Cell::Pool => pool(context.map(Context::site), number(Dimension::Length)?),
+                Cell::Date => match context {
+                    Some(context) => parse_time(text, context.site().offset).map(Value::Moment),
+                    None => Err("there is no site".into()),
+                },
+                Cell::Low(_) | Cell::Preferred(_) | Cell::High(_) => bound(Dimension::Temperature),
+                Cell::Oxygen(_) => match bound(Dimension::Concentration)? {
+                    Value::Number(Some(v)) => above_zero(v, "oxygen"),
+                    none => Ok(none),
+                },
+            },
+        }
+    }
+
+    /// Says what is wrong with what stands in it now.
+    pub fn check(&mut self, context: Option<&Context>, system: System) {
+        self.wrong = self.value(context, system).err();
+    }
+}
+
+fn opening(outlet: &Outlet, text: &str) -> Result<Value, String> {
+    if let Some(position) = outlet.positions.iter().find(|p| p.name == text && p.name.parse::<f64>().is_err()) {
+        return Ok(Value::Number(Some(position.opening)));
+    }
+    let unit = System::Si.unit(Dimension::Percent);
+    let percent = parse(text, Dimension::Percent, unit).map_err(|error| error.to_string())?;
+    if (0.0..=100.0).contains(&percent) {
+        Ok(Value::Number(Some(percent / 100.0)))
+    } else {
+        Err("an opening lies between 0 and 100 %".into())
+    }
+}
+
+fn pool(site: Option<&Site>, pool_m: f64) -> Result<Value, String> {
+    match site {
+        Some(site) if pool_m > site.pool.bed_m && pool_m <= site.pool.top_m() => Ok(Value::Number(Some(pool_m))),
+        _ => Err("outside the pool table".into()),
+    }
+}

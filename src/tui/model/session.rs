@@ -1,0 +1,148 @@
+//! An open site: its files, what the user changed, and the answers to it.
+
+use std::sync::Arc;
+
+use crate::tasks::rank::RankAnswer;
+use crate::tasks::{Context, Failure, Given, MixAnswer};
+
+use super::super::work::Anew;
+use super::board::{Cell, rows};
+use super::draft::{Draft, History};
+use super::Screen;
+
+/// Pool and settings as they were computed together.
+#[derive(Debug, Clone)]
+pub struct Shown {
+    /// What they were computed on.
+    pub on: Anew,
+    /// Settings with their answers.
+    pub mixes: Vec<(Given, Result<MixAnswer, Failure>)>,
+}
+
+/// A ranking with what it was made for.
+#[derive(Debug, Clone)]
+pub struct Ranked {
+    /// The files with what was changed.
+    pub context: Arc<Context>,
+    /// The answer.
+    pub answer: RankAnswer,
+}
+
+/// Where the user is on the pool screen.
+#[derive(Debug, Clone, Default)]
+pub struct PoolView {
+    /// Elevation read, m.
+    pub cursor_m: Option<f64>,
+    /// Cast looked at, counted in the season's; the one used when absent.
+    pub cast: Option<usize>,
+    /// Casts laid over.
+    pub over: Vec<usize>,
+    /// Threshold typed, C.
+    pub colder_c: Option<f64>,
+    /// First line of the flags shown.
+    pub scroll: usize,
+}
+
+/// Where the user is on the mix screen.
+#[derive(Debug, Clone)]
+pub struct MixView {
+    /// The cell chosen.
+    pub cell: Cell,
+    /// First line of what is said shown.
+    pub scroll: usize,
+}
+
+/// Where the user is on the rank screen.
+#[derive(Debug, Clone, Default)]
+pub struct RankView {
+    /// The mix chosen, from 0.
+    pub at: usize,
+    /// Whether the rejected are shown, from a line.
+    pub rejected: Option<usize>,
+}
+
+/// An open site.
+#[derive(Debug)]
+pub struct Session {
+    /// The files as opened.
+    pub base: Arc<Context>,
+    /// What the user changed.
+    pub history: History,
+    /// Pool and settings: the last answer there is.
+    pub shown: Option<Shown>,
+    /// Why the newest question about them has no answer.
+    pub wrong: Option<Failure>,
+    /// The ranking: the last there is.
+    pub ranked: Option<Ranked>,
+    /// Why the newest question about it has no answer.
+    pub rank_wrong: Option<Failure>,
+    /// The screen.
+    pub screen: Screen,
+    /// The pool screen.
+    pub pool: PoolView,
+    /// The mix screen.
+    pub mix: MixView,
+    /// The rank screen.
+    pub rank: RankView,
+}
+
+impl Session {
+    /// A site just opened: the setting now is tried first.
+    pub fn begin(base: Arc<Context>) -> Self {
+        let now = Given::now(base.site());
+        let cell = rows(base.site(), base.on.date_naive()).first().map_or(Cell::Pool, |row| row.cells(base.site())[0]);
+        Self {
+            history: History::begin(Draft::begin(now)),
+            base,
+            shown: None,
+            wrong: None,
+            ranked: None,
+            rank_wrong: None,
+            screen: Screen::Pool,
+            pool: PoolView::default(),
+            mix: MixView { cell, scroll: 0 },
+            rank: RankView::default(),
+        }
+    }
+
+    /// What the user changed.
+    pub fn draft(&self) -> &Draft {
+        self.history.now()
+    }
+
+    /// The files with what is changed, as far as that is computed.
+    pub fn context(&self) -> &Arc<Context> {
+        self.shown.as_ref().map_or(&self.base, |s| &s.on.context)
+    }
+
+    /// Whether what is shown was computed on these files and with these changes.
+    pub fn is_current(&self) -> bool {
+        let of = |s: &Shown| Arc::ptr_eq(&s.on.base, &self.base) && s.on.changed == self.draft().changed;
+        self.shown.as_ref().is_some_and(of)
+    }
+
+    /// Whether what the user changed means the same in other files: the same gates, wells and targets, by name.
+    pub fn takes(&self, other: &Context) -> bool {
+        let names = |context: &Context| {
+            let site = context.site();
+            let outlets = site.outlets.iter().map(|o| (o.name.clone(), o.well));
+            let wells = site.wells.iter().map(|w| (w.name.clone(), None));
+            let targets = site.targets.iter().map(|t| (t.name.clone(), None));
+            outlets.chain(wells).chain(targets).collect::<Vec<_>>()
+        };
+        names(&self.base) == names(other)
+    }
+
+    /// The answer to a try; the last there is of the one on the board where it has none of its own yet.
+    pub fn answer(&self, index: usize) -> Option<&Result<MixAnswer, Failure>> {
+        let shown = self.shown.as_ref()?;
+        let given = self.draft().tries.get(index)?;
+        let place = shown.mixes.iter().find(|(g, _)| g == given);
+        place.or_else(|| shown.mixes.get(index)).map(|(_, answer)| answer)
+    }
+
+    /// The answer to the try on the board.
+    pub fn tried(&self) -> Option<&MixAnswer> {
+        self.answer(self.draft().at)?.as_ref().ok()
+    }
+}

@@ -1,0 +1,286 @@
+//! The loop: what arrives becomes a message, what the update asks for is done, the model is drawn.
+
+use std::io;
+use std::sync::atomic::{AtomicBool, Ordering};
+use std::sync::mpsc::{Receiver, RecvTimeoutError, Sender, channel};
+use std::sync::{Arc, Mutex, PoisonError};
+use std::thread;
+use std::time::Duration;
+
+use chrono::Utc;
+use crossterm::event::{Event as TermEvent, poll, read};
+
+use crate::files::folder::{demonstrations, sites_in, stamps};
+use crate::files::settings::{self, Settings};
+use crate::problem::Problem;
+use crate::tasks::{self, Asked};
+use crate::units::System;
+
+use super::look::{Look, Symbols, Theme};
+use super::model::{Choice, Likes, Message, Model, Stage};
+use super::terminal::{self, Taken};
+use super::update::{Effect, Event, begin, update};
+use super::view::draw;
+use super::work::{Lane, Worker};
+
+/// How long the keyboard is listened to before the signals are looked at.
+const LISTEN: Duration = Duration::from_millis(200);
+/// How often progress is drawn, and how often an idle program wakes.
+const BUSY: Duration = Duration::from_millis(100);
+const IDLE: Duration = Duration::from_secs(1);
+
+/// What arrives.
+enum Arrived {
+    Event(Event),
+    /// The terminal or the system asks to end.
+    End,
+}
+
+/// Opens the screens on what the command line names.
+///
+/// # Errors
+/// This is no terminal, or it cannot be written to.
+pub fn run(asked: Asked) -> Result<(), Problem> {
+    if !terminal::is_there() {
+        return Err(Problem::refused(
+            "no-terminal",
+            "the screens need a terminal, and this is none",
+            "run it in a terminal, or print an answer: gatemix pool, gatemix mix, gatemix rank",
+        ));
+    }
+    on_terminal(asked).map_err(|error| Problem::refused("terminal", error.to_string(), "try another terminal"))
+}
+
+fn on_terminal(asked: Asked) -> io::Result<()> {
+    let (kept, problems) = settings::load();
+    let likes = likes(&kept);
+    let (send, arrivals) = channel();
+    let mut taken = Taken::take(!likes.no_mouse)?;
+    let mut model = Model::new(asked, likes, terminal::colours(), taken.size(), Utc::now());
+    model.message =
+        problems.first().map(|p| Message { words: p.text(System::default()), wrong: true });
+    let worker = |send: &Sender<Arrived>| {
+        let send = send.clone();
+        Worker::start(move |sent| _ = send.send(Arrived::Event(Event::Sent(sent))))
+    };
+    let mut outside = Outside {
+        quick: worker(&send),
+        long: worker(&send),
+        watched: Arc::default(),
+        send: send.clone(),
+    };
+    watch(&outside.watched, send.clone());
+    let paused = Arc::new(AtomicBool::new(false));
+    listen(send, Arc::clone(&paused))?;
+    let mut effects = start(&mut model);
+    loop {
+        for effect in effects {
+            if let Effect::Suspend = effect {
+                paused.store(true, Ordering::Relaxed);
+                taken.suspend()?;
+                paused.store(false, Ordering::Relaxed);
+            } else if outside.perform(effect, &mut taken)? {
+                return Ok(());
+            }
+        }
+        taken.draw(|frame| {
+            let area = frame.area();
+            if let Some(cursor) = draw(&model, area, frame.buffer_mut()) {
+                frame.set_cursor_position(cursor);
+            }
+        })?;
+        match wait(&arrivals, &mut model) {
+            Some(next) => effects = next,
+            None => return Ok(()),
+        }
+    }
+}
+
+/// What is done first: a list for a folder of sites, else the site.
+fn start(model: &mut Model) -> Vec<Effect> {
+    let named = model.asked.site.clone();
+    let folder = named.filter(|named| !sites_in(named).is_empty());
+    match folder {
+        Some(folder) => {
+            model.folder = Some(folder.clone());
+            model.stage = Stage::Sites { list: sites(Some(&folder)), at: 0 };
+            Vec::new()
+        }
+        None => begin(model),
+    }
+}
+
+/// Waits until something arrives that changes what is shown; what then is to be done. `None` at the end.
+fn wait(arrivals: &Receiver<Arrived>, model: &mut Model) -> Option<Vec<Effect>> {
+    loop {
+        let busy = model.quick.is_some() || model.long.is_some();
+        let first = arrivals.recv_timeout(if busy { BUSY } else { IDLE });
+        let mut effects = update(model, Event::Tick(Utc::now()));
+        match first {
+            Err(RecvTimeoutError::Disconnected) => return None,
+            Err(RecvTimeoutError::Timeout) if !busy && effects.is_empty() => {}
+            Err(RecvTimeoutError::Timeout) => return Some(effects),
+            Ok(first) => {
+                // all that waits is taken in before anything is drawn
+                for arrived in std::iter::once(first).chain(arrivals.try_iter()) {
+                    match arrived {
+                        Arrived::End => return None,
+                        Arrived::Event(event) => effects.extend(update(model, event)),
+                    }
+                }
+                return Some(effects);
+            }
+        }
+    }
+}
+
+/// What effects reach.
+struct Outside {
+    quick: Worker,
+    long: Worker,
+    watched: Arc<Mutex<Option<String>>>,
+    send: Sender<Arrived>,
+}
+
+impl Outside {
+    /// Does what is asked for; whether it is to leave.
+    fn perform(&mut self, effect: Effect, taken: &mut Taken) -> io::Result<bool> {
+        match effect {
+            Effect::Ask(generation, work) => self.worker(work.lane()).ask(generation, work),
+            Effect::Stop(lane, generation) => self.worker(lane).stop(generation),
+            Effect::Watch(named) => {
+                *self.watched.lock().unwrap_or_else(PoisonError::into_inner) = Some(named);
+            }
+            Effect::List(folder) => self.answer(Event::Sites(sites(folder.as_deref()))),
+            Effect::NewSite(folder, system) => {
+                let made = tasks::new(std::path::Path::new(&folder), system).map(|_| folder);
+                self.answer(Event::Made(made));
+            }
+            Effect::Copy(text) => taken.copy(&text)?,
+            Effect::Keep(likes) => {
+                taken.mouse(!likes.no_mouse)?;
+                if let Err(problem) = settings::save(&kept(likes)) {
+                    self.answer(Event::Said(problem));
+                }
+            }
+            Effect::Quit => return Ok(true),
+            Effect::Suspend => {}
+        }
+        Ok(false)
+    }
+
+    fn worker(&self, lane: Lane) -> &Worker {
+        match lane {
+            Lane::Quick => &self.quick,
+            Lane::Long => &self.long,
+        }
+    }
+
+    fn answer(&self, event: Event) {
+        // the receiver lives as long as the loop that calls this
+        _ = self.send.send(Arrived::Event(event));
+    }
+}
+
+/// The sites of a folder, then the demonstrations.
+fn sites(folder: Option<&str>) -> Vec<Choice> {
+    let found = sites_in(folder.unwrap_or(".")).into_iter().map(|f| Choice {
+        name: f.name,
+        named: f.path.display().to_string(),
+        demonstration: false,
+    });
+    let inside = demonstrations().into_iter().map(|name| Choice {
+        name: name.to_owned(),
+        named: name.to_owned(),
+        demonstration: true,
+    });
+    found.chain(inside).collect()
+}
+
+/// Listens to the keyboard and to the signals that end a program.
+fn listen(send: Sender<Arrived>, paused: Arc<AtomicBool>) -> io::Result<()> {
+    let end = Arc::new(AtomicBool::new(false));
+    #[cfg(unix)]
+    for signal in [signal_hook::consts::SIGTERM, signal_hook::consts::SIGHUP, signal_hook::consts::SIGINT] {
+        signal_hook::flag::register(signal, Arc::clone(&end))?;
+    }
+    thread::spawn(move || {
+        loop {
+            if end.load(Ordering::Relaxed) {
+                _ = send.send(Arrived::End);
+                return;
+            }
+            if paused.load(Ordering::Relaxed) {
+                thread::sleep(LISTEN);
+                continue;
+            }
+            let arrived = match poll(LISTEN) {
+                Ok(false) => continue,
+                Ok(true) => read(),
+                Err(error) => Err(error),
+            };
+            let event = match arrived {
+                Ok(TermEvent::Key(key)) => Event::Key(key),
+                Ok(TermEvent::Mouse(mouse)) => Event::Mouse(mouse),
+                Ok(TermEvent::Paste(text)) => Event::Paste(text),
+                Ok(TermEvent::Resize(columns, rows)) => Event::Resize(columns, rows),
+                Ok(TermEvent::FocusGained | TermEvent::FocusLost) => continue,
+                // a terminal that is gone says nothing more
+                Err(_) => {
+                    _ = send.send(Arrived::End);
+                    return;
+                }
+            };
+            if send.send(Arrived::Event(event)).is_err() {
+                return;
+            }
+        }
+    });
+    Ok(())
+}
+
+/// Looks each second whether the files of the site watched differ from what they were.
+fn watch(watched: &Arc<Mutex<Option<String>>>, send: Sender<Arrived>) {
+    let watched = Arc::clone(watched);
+    thread::spawn(move || {
+        let mut last = None;
+        loop {
+            let named = watched.lock().unwrap_or_else(PoisonError::into_inner).clone();
+            if let Some(named) = named {
+                let now = (stamps(&named), named);
+                let changed = last.as_ref().is_some_and(|(then, of)| *of == now.1 && *then != now.0);
+                last = Some(now);
+                if changed && send.send(Arrived::Event(Event::FilesChanged)).is_err() {
+                    return;
+                }
+            }
+            thread::sleep(IDLE);
+        }
+    });
+}
+
+/// What the settings of the user mean.
+fn likes(kept: &Settings) -> Likes {
+    let symbols = Symbols::NAMES.iter().find(|n| Some(n.0) == kept.symbols.as_deref());
+    let theme = Theme::NAMES.iter().find(|n| Some(n.0) == kept.theme.as_deref());
+    Likes {
+        units: match kept.units.as_deref() {
+            Some("us") => Some(System::Us),
+            Some("si") => Some(System::Si),
+            _ => None,
+        },
+        look: Look {
+            symbols: symbols.map_or_else(terminal::symbols, |n| n.1),
+            theme: theme.map_or_else(Theme::default, |n| n.1),
+        },
+        no_mouse: kept.mouse == Some(false),
+    }
+}
+
+/// The words in which they are kept.
+fn kept(likes: Likes) -> Settings {
+    let symbols = Symbols::NAMES.iter().find(|n| n.1 == likes.look.symbols).map(|n| n.0.to_owned());
+    let theme = Theme::NAMES.iter().find(|n| n.1 == likes.look.theme).map(|n| n.0.to_owned());
+    let units = likes.units.map(|u| if u == System::Us { "us" } else { "si" }.to_owned());
+    Settings { units, symbols, theme, mouse: Some(!likes.no_mouse) }
+}

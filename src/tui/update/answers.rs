@@ -1,0 +1,170 @@
+//! What the workers send.
+
+use std::sync::Arc;
+
+use crate::tasks::rank::Part;
+use crate::tasks::{Context, Failure, Solved};
+use crate::units::{Dimension, show};
+
+use super::super::model::{Model, Ranked, Session, Shown, Stage};
+use super::super::work::{Computed, Done, Lane, Sent};
+use super::{Effect, ask_mixes, ask_rank, change, complain, say};
+
+/// Takes what a worker sent; what is no longer wanted is dropped.
+pub(super) fn sent(model: &mut Model, sent: Sent) -> Vec<Effect> {
+    let wanted = |model: &mut Model, lane: Lane, generation: u64| {
+        model.under(lane).is_some_and(|under| under.generation == generation)
+    };
+    match sent {
+        Sent::Progress(lane, generation, done) => {
+            if let Some(under) = model.under(lane).as_mut().filter(|u| u.generation == generation) {
+                under.done = done;
+            }
+            Vec::new()
+        }
+        Sent::Done(lane, generation, done) => {
+            if !wanted(model, lane, generation) {
+                return Vec::new();
+            }
+            *model.under(lane) = None;
+            match done {
+                Done::Opened(opened) => self::opened(model, opened),
+                Done::Mixed(mixed) => self::mixed(model, mixed),
+                Done::Ranked(ranked) => {
+                    if let Some(session) = model.session_mut() {
+                        match ranked {
+                            Ok(ranked) => {
+                                let (context, answer) = *ranked;
+                                session.rank.at = session.rank.at.min(answer.mixes.len().saturating_sub(1));
+                                session.ranked = Some(Ranked { context, answer });
+                                session.rank_wrong = None;
+                            }
+                            Err(failure) => session.rank_wrong = Some(failure),
+                        }
+                    }
+                    Vec::new()
+                }
+            }
+        }
+    }
+}
+
+fn opened(model: &mut Model, opened: Result<Arc<Context>, Failure>) -> Vec<Effect> {
+    let stage = std::mem::replace(&mut model.stage, Stage::Opening);
+    let before = match stage {
+        Stage::Site(session) => Some(session),
+        Stage::Broken { kept, .. } => kept,
+        Stage::Opening | Stage::Sites { .. } => None,
+    };
+    let context = match opened {
+        Ok(context) => context,
+        Err(failure) => {
+            let (problems, system) = match failure {
+                Failure::Refused(problems, system) => (problems, system),
+                Failure::Usage(words) => {
+                    let cure = "correct the command line";
+                    (vec![crate::problem::Problem::refused("usage", words, cure)], model.system())
+                }
+                Failure::Stopped => (Vec::new(), model.system()),
+            };
+            model.stage = Stage::Broken { problems, system, scroll: 0, kept: before };
+            return Vec::new();
+        }
+    };
+    let session = match before {
+        None => Box::new(Session::begin(context)),
+        Some(mut session) if session.takes(&context) => {
+            session.base = context;
+            session
+        }
+        Some(session) => {
+            say(model, "gates, wells or targets changed in the site file: tries begin anew");
+            Box::new(Session { screen: session.screen, ..Session::begin(context) })
+        }
+    };
+    model.stage = Stage::Site(session);
+    [ask_mixes(model, None), ask_rank(model)].into_iter().flatten().collect()
+}
+
+fn mixed(model: &mut Model, mixed: Result<Box<Computed>, Failure>) -> Vec<Effect> {
+    let Some(session) = model.session_mut() else { return Vec::new() };
+    let Computed { anew, mixes, solved } = match mixed {
+        Ok(computed) => *computed,
+        Err(failure) => {
+            session.wrong = Some(failure);
+            return Vec::new();
+        }
+    };
+    session.wrong = None;
+    let before = session.shown.take();
+    // answers of last time hold where nothing but the tries changed
+    let kept = if anew.is_some() { Vec::new() } else { before.as_ref().map_or_else(Vec::new, |s| s.mixes.clone()) };
+    let on = anew.or_else(|| before.map(|s| s.on));
+    let answer = |given: &crate::tasks::Given| {
+        let of = |list: &[(crate::tasks::Given, _)]| list.iter().find(|(g, _)| g == given).cloned();
+        of(&mixes).or_else(|| of(&kept))
+    };
+    if let Some(on) = on {
+        let mixes = session.draft().tries.iter().filter_map(answer).collect();
+        session.shown = Some(Shown { on, mixes });
+    }
+    solved.map_or_else(Vec::new, |solved| take_solved(model, solved))
+}
+
+/// Puts the first split that gives the temperature on the board, or says why there is none.
+fn take_solved(model: &mut Model, solved: Result<Solved, Failure>) -> Vec<Effect> {
+    let system = model.system();
+    let shown = |c: f64| show(c, Dimension::Temperature, system, 1);
+    let solved = match solved {
+        Ok(solved) => solved,
+        Err(Failure::Usage(words)) => {
+            complain(model, crate::problem::harmless(&words));
+            return Vec::new();
+        }
+        Err(Failure::Refused(problems, _)) => {
+            let words = problems.first().map_or_else(String::new, |p| p.sentence(system));
+            complain(model, words);
+            return Vec::new();
+        }
+        Err(Failure::Stopped) => return Vec::new(),
+    };
+    let names = model.session().map(|s| solved.between.map(|part| name(s, part))).unwrap_or_default();
+    let Some((root, given)) = solved.roots.first() else {
+        let [low, high] = solved.bracket_c;
+        let words = format!(
+            "no split between {} and {} gives {}: they give {} to {}",
+            names[0],
+            names[1],
+            shown(solved.wanted_c),
+            shown(low),
+            shown(high)
+        );
+        complain(model, words);
+        return Vec::new();
+    };
+    let given = given.clone();
+    let words = format!(
+        "{} with {} {} and {} {}{}",
+        shown(root.temperature_c),
+        names[0],
+        show(root.flows_m3s[0], Dimension::Flow, system, 1),
+        names[1],
+        show(root.flows_m3s[1], Dimension::Flow, system, 1),
+        if solved.roots.len() > 1 { "; another split gives it too" } else { "" }
+    );
+    let effects = change(model, |_, draft| {
+        if let Some(tried) = draft.tried_mut() {
+            *tried = given;
+        }
+    });
+    say(model, words);
+    effects
+}
+
+fn name(session: &Session, part: Part) -> String {
+    let site = session.base.site();
+    crate::problem::harmless(match part {
+        Part::Outlet(i) => &site.outlets[i].name,
+        Part::Well(i) => &site.wells[i].name,
+    })
+}

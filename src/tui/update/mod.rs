@@ -1,0 +1,312 @@
+//! A message changes the model, and may ask for something to be done outside it.
+
+mod answers;
+mod list;
+mod mix;
+mod mouse;
+mod pool;
+mod rank;
+mod typing;
+
+use chrono::{DateTime, Utc};
+use crossterm::event::{KeyEvent, MouseEvent};
+
+use crate::problem::Problem;
+use crate::tasks::rank::RankAsked;
+use crate::tasks::{Asked, Given};
+use crate::units::System;
+
+use super::keys::{Action, Place, action};
+use super::model::{Choice, Draft, Likes, Message, Model, Over, Screen, Session, Stage, Under};
+use super::view::answer_text;
+use super::work::{Lane, On, Sent, Work};
+
+/// A message.
+#[derive(Debug)]
+pub enum Event {
+    /// A key.
+    Key(KeyEvent),
+    /// The mouse.
+    Mouse(MouseEvent),
+    /// Text pasted.
+    Paste(String),
+    /// The terminal has this many columns and rows.
+    Resize(u16, u16),
+    /// The time of day.
+    Tick(DateTime<Utc>),
+    /// A worker.
+    Sent(Sent),
+    /// Files on disk differ from what was read.
+    FilesChanged,
+    /// The list of sites that was asked for.
+    Sites(Vec<Choice>),
+    /// A new site was made in a folder, or why not.
+    Made(Result<String, Problem>),
+}
+
+/// What is to be done outside the model.
+#[derive(Debug)]
+pub enum Effect {
+    /// Compute.
+    Ask(u64, Work),
+    /// Stop computing in a lane: nothing of this generation or before is wanted.
+    Stop(Lane, u64),
+    /// Notice when the files of a site change.
+    Watch(String),
+    /// List the sites of a folder, and the demonstrations.
+    List(Option<String>),
+    /// Make a new site in a folder.
+    NewSite(String, System),
+    /// Copy to the clipboard of the terminal.
+    Copy(String),
+    /// Keep what the user likes.
+    Keep(Likes),
+    /// Stop for the shell.
+    Suspend,
+    /// Leave.
+    Quit,
+}
+
+/// Asks for the site the command line names.
+pub fn begin(model: &mut Model) -> Vec<Effect> {
+    let work = Work::Open(model.asked.clone(), model.clock);
+    let mut effects = vec![ask(model, work)];
+    effects.extend(model.asked.site.clone().map(Effect::Watch));
+    effects
+}
+
+/// Opens another site.
+fn open(model: &mut Model, named: String) -> Vec<Effect> {
+    model.asked = Asked { site: Some(named), units: model.asked.units, ..Asked::default() };
+    model.stage = Stage::Opening;
+    model.message = None;
+    begin(model)
+}
+
+/// Changes the model by a message.
+pub fn update(model: &mut Model, event: Event) -> Vec<Effect> {
+    match event {
+        Event::Key(key) => pressed(model, &key),
+        Event::Mouse(mouse) => mouse::moused(model, mouse),
+        Event::Paste(text) => typing::pasted(model, &text),
+        Event::Resize(columns, rows) => {
+            model.size = (columns, rows);
+            Vec::new()
+        }
+        Event::Tick(clock) => ticked(model, clock),
+        Event::Sent(sent) => answers::sent(model, sent),
+        Event::FilesChanged => {
+            // what is computed on the old files is computed on nothing
+            let work = Work::Open(model.asked.clone(), model.clock);
+            vec![ask(model, work)]
+        }
+        Event::Sites(list) => list::listed(model, list),
+        Event::Made(Ok(folder)) => open(model, folder),
+        Event::Made(Err(problem)) => {
+            let system = model.system();
+            complain(model, problem.text(system));
+            Vec::new()
+        }
+    }
+}
+
+/// Places whose keys work now, the nearest first.
+pub fn places(model: &Model) -> Vec<Place> {
+    match &model.over {
+        Some(Over::Field(_)) => return vec![Place::Field],
+        Some(_) => return vec![Place::List, Place::Everywhere],
+        None => {}
+    }
+    match &model.stage {
+        Stage::Opening => vec![Place::Everywhere],
+        Stage::Sites { .. } => vec![Place::Sites, Place::Everywhere],
+        Stage::Broken { .. } => vec![Place::Problems, Place::Everywhere],
+        Stage::Site(session) => {
+            let screen = match session.screen {
+                Screen::Pool => Place::Pool,
+                Screen::Mix => Place::Mix,
+                Screen::Rank => Place::Rank,
+            };
+            vec![screen, Place::Site, Place::Everywhere]
+        }
+    }
+}
+
+fn pressed(model: &mut Model, key: &KeyEvent) -> Vec<Effect> {
+    // these two work while typing too
+    if let Some(action @ (Action::Quit | Action::Suspend)) =
+        action(key, &[Place::Everywhere]).filter(|_| key.modifiers.contains(crossterm::event::KeyModifiers::CONTROL))
+    {
+        return vec![if action == Action::Quit { Effect::Quit } else { Effect::Suspend }];
+    }
+    if matches!(model.over, Some(Over::Field(_))) {
+        return typing::key(model, key);
+    }
+    match action(key, &places(model)) {
+        Some(action) => act(model, action),
+        None => Vec::new(),
+    }
+}
+
+/// Does what a key, or the mouse in its place, asks for.
+fn act(model: &mut Model, action: Action) -> Vec<Effect> {
+    if model.over.is_some() && !matches!(action, Action::Quit | Action::Help) {
+        return list::act(model, action);
+    }
+    match action {
+        Action::Quit => vec![Effect::Quit],
+        Action::Suspend => vec![Effect::Suspend],
+        Action::Help => {
+            model.over = if matches!(model.over, Some(Over::Help(_))) { None } else { Some(Over::Help(0)) };
+            Vec::new()
+        }
+        Action::Settings => {
+            model.over = Some(Over::Settings(0));
+            Vec::new()
+        }
+        Action::Sites => list::sites(model),
+        Action::Back => back(model),
+        Action::Copy => copy(model),
+        Action::Screen(number) => to_screen(model, |_| number.saturating_sub(1)),
+        Action::NextScreen => to_screen(model, |at| (at + 1) % Screen::ALL.len()),
+        Action::PreviousScreen => to_screen(model, |at| (at + Screen::ALL.len() - 1) % Screen::ALL.len()),
+        other => match &model.stage {
+            Stage::Sites { .. } | Stage::Broken { .. } => list::act(model, other),
+            Stage::Opening => Vec::new(),
+            Stage::Site(session) => match session.screen {
+                Screen::Pool => pool::act(model, other),
+                Screen::Mix => mix::act(model, other),
+                Screen::Rank => rank::act(model, other),
+            },
+        },
+    }
+}
+
+fn to_screen(model: &mut Model, to: impl Fn(usize) -> usize) -> Vec<Effect> {
+    if let Some(session) = model.session_mut() {
+        let at = Screen::ALL.iter().position(|s| s.1 == session.screen).unwrap_or(0);
+        if let Some((_, screen)) = Screen::ALL.get(to(at)) {
+            session.screen = *screen;
+        }
+    }
+    model.message = None;
+    Vec::new()
+}
+
+/// Back: long work is stopped first, then what was said is taken off.
+fn back(model: &mut Model) -> Vec<Effect> {
+    if let Some(under) = model.long.take() {
+        say(model, "stopped; what is shown was computed before");
+        return vec![Effect::Stop(Lane::Long, under.generation + 1)];
+    }
+    model.message = None;
+    if let Some(session) = model.session_mut() {
+        session.rank.rejected = None;
+        session.pool.cursor_m = None;
+    }
+    Vec::new()
+}
+
+fn copy(model: &mut Model) -> Vec<Effect> {
+    match model.session().and_then(answer_text) {
+        Some(text) => {
+            say(model, "copied to the clipboard of the terminal, where it takes that");
+            vec![Effect::Copy(text)]
+        }
+        None => {
+            complain(model, "there is no answer to copy yet");
+            Vec::new()
+        }
+    }
+}
+
+fn ticked(model: &mut Model, clock: DateTime<Utc>) -> Vec<Effect> {
+    model.clock = clock;
+    let follows = |s: &Session| s.base.on_from == crate::tasks::OnFrom::Clock;
+    // the decision date follows the clock by the hour: figures that change by the second cannot be compared
+    let old = model.session().is_some_and(|s| follows(s) && (clock - s.base.on.to_utc()).num_minutes() >= 60);
+    if old && model.quick.is_none() {
+        let work = Work::Open(model.asked.clone(), clock);
+        return vec![ask(model, work)];
+    }
+    Vec::new()
+}
+
+/// Says something on the message line.
+fn say(model: &mut Model, words: impl Into<String>) {
+    model.message = Some(Message { words: words.into(), wrong: false });
+}
+
+/// Says what went wrong.
+fn complain(model: &mut Model, words: impl Into<String>) {
+    model.message = Some(Message { words: words.into(), wrong: true });
+}
+
+/// Asks a question; what was asked before in its lane is wanted no more.
+fn ask(model: &mut Model, work: Work) -> Effect {
+    model.generation += 1;
+    let generation = model.generation;
+    *model.under(work.lane()) = Some(Under { generation, since: model.clock, done: 0.0 });
+    Effect::Ask(generation, work)
+}
+
+/// Takes a new draft and asks what that makes necessary.
+fn change(model: &mut Model, edit: impl FnOnce(&Session, &mut Draft)) -> Vec<Effect> {
+    let Some(session) = model.session_mut() else { return Vec::new() };
+    let mut draft = session.draft().clone();
+    edit(session, &mut draft);
+    let before = session.draft().clone();
+    if !session.history.change(draft) {
+        return Vec::new();
+    }
+    model.message = None;
+    recompute(model, &before)
+}
+
+/// Asks what differs from an earlier draft.
+fn recompute(model: &mut Model, before: &Draft) -> Vec<Effect> {
+    let Some(session) = model.session() else { return Vec::new() };
+    let draft = session.draft();
+    let mixes = draft.changed != before.changed || draft.tries != before.tries;
+    let ranks = draft.changed != before.changed
+        || draft.release_m3s.map(f64::to_bits) != before.release_m3s.map(f64::to_bits)
+        || draft.order != before.order
+        || draft.without != before.without;
+    let mut effects = Vec::new();
+    if mixes {
+        effects.extend(ask_mixes(model, None));
+    }
+    if ranks {
+        effects.extend(ask_rank(model));
+    }
+    effects
+}
+
+/// Asks for every try that has no answer yet.
+fn ask_mixes(model: &mut Model, solve: Option<(Given, f64)>) -> Option<Effect> {
+    let session = model.session()?;
+    let draft = session.draft();
+    let same = session.shown.as_ref().filter(|_| session.is_current());
+    let (on, tries) = match same {
+        Some(shown) => {
+            let missing = |t: &&Given| !shown.mixes.iter().any(|(g, _)| g == *t);
+            (On::Same(shown.on.context.clone()), draft.tries.iter().filter(missing).cloned().collect())
+        }
+        None => (On::Files(session.base.clone(), draft.changed.clone()), draft.tries.clone()),
+    };
+    Some(ask(model, Work::Mix { on, tries, solve }))
+}
+
+/// Asks for the ranking.
+fn ask_rank(model: &mut Model) -> Option<Effect> {
+    let session = model.session()?;
+    let (draft, site) = (session.draft(), session.base.site());
+    let asked = RankAsked {
+        release: draft.release_m3s.map(|flow| format!("{flow} m3/s")),
+        order: Some(draft.order.iter().map(|c| c.name()).collect::<Vec<_>>().join(",")),
+        without: draft.without.iter().map(|&i| site.outlets[i].name.clone()).collect(),
+        ..RankAsked::default()
+    };
+    let work = Work::Rank { base: session.base.clone(), changed: draft.changed.clone(), asked };
+    Some(ask(model, work))
+}

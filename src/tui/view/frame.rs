@@ -1,0 +1,206 @@
+//! The frame around every screen.
+//!
+//! ```text
+//! site [demonstration]                                             units
+//! pool  cast, age, badge  for the date
+//!  1 pool   2 mix   3 rank                                 what is computed
+//! ...body...
+//! message
+//! keys that work here
+//! caution
+//! ```
+
+use ratatui::buffer::Buffer;
+use ratatui::layout::{Position, Rect};
+
+use crate::problem::harmless;
+use crate::report::caution_within;
+use crate::tasks::{Context, Freshness};
+use crate::units::{Dimension, System, show};
+
+use super::super::keys::hints;
+use super::super::look::Role;
+use super::super::model::{Model, Screen, Session, Stage, Under};
+use super::super::update::places;
+use super::write::{cut, put, put_right};
+
+/// Work shorter than this is not spoken of, milliseconds (choice: what still feels at once).
+const AT_ONCE_MS: i64 = 200;
+
+/// Parts of the screen.
+#[derive(Debug, Clone, Copy)]
+pub(super) struct Parts {
+    pub(super) head: Rect,
+    pub(super) tabs: Rect,
+    pub(super) body: Rect,
+    pub(super) message: Rect,
+    pub(super) keys: Rect,
+    pub(super) caution: Rect,
+}
+
+/// Where the parts lie.
+pub(super) fn parts(_model: &Model, area: Rect) -> Parts {
+    let line = |from_top: u16, height: u16| Rect { y: area.y + from_top, height, ..area };
+    let body = area.height.saturating_sub(6);
+    Parts {
+        head: line(0, 2),
+        tabs: line(2, 1),
+        body: line(3, body),
+        message: line(3 + body, 1),
+        keys: line(4 + body, 1),
+        caution: line(5 + body, 1),
+    }
+}
+
+/// Says that there is no room.
+pub(super) fn too_small(area: Rect, buf: &mut Buffer) {
+    let words = format!("{}x{}: too small, needs 24x6; Ctrl-C quits", area.width, area.height);
+    put(buf, area, 0, 0, &words, ratatui::style::Style::new());
+    let last = area.height.saturating_sub(1);
+    if last > 0 {
+        put(buf, area, 0, last, caution_within(usize::from(area.width)), ratatui::style::Style::new());
+    }
+}
+
+/// Draws everything but the body.
+pub(super) fn draw(model: &Model, parts: &Parts, buf: &mut Buffer) {
+    let look = model.look;
+    match &model.stage {
+        Stage::Site(session) => {
+            head(model, session, parts.head, buf);
+            tabs(model, session, parts.tabs, buf);
+        }
+        Stage::Opening => {
+            put(buf, parts.head, 0, 0, "gatemix", look.style(Role::Strong));
+            let what = model.asked.site.as_deref().map_or_else(|| "the demonstration".to_owned(), harmless);
+            put(buf, parts.body, 0, 1, &format!("opening {what} ..."), look.style(Role::Plain));
+        }
+        Stage::Sites { .. } => {
+            put(buf, parts.head, 0, 0, "gatemix: which site?", look.style(Role::Strong));
+        }
+        Stage::Broken { .. } => {
+            let what = model.asked.site.as_deref().unwrap_or_default();
+            let words = format!("gatemix: the files of {} give no answer", harmless(what));
+            put(buf, parts.head, 0, 0, &words, look.style(Role::Strong));
+        }
+    }
+    if let Some(message) = &model.message {
+        let (mark, role) = if message.wrong { ("! ", Role::Outside) } else { ("  ", Role::Plain) };
+        let column = put(buf, parts.message, 0, 0, mark, look.style(role));
+        put(buf, parts.message, column, 0, &message.words, look.style(role));
+    }
+    keys(model, parts.keys, buf);
+    let words = caution_within(usize::from(parts.caution.width));
+    put(buf, parts.caution, 0, 0, words, look.style(Role::Caution));
+}
+
+fn keys(model: &Model, area: Rect, buf: &mut Buffer) {
+    let mut column = 0;
+    for (key, word) in hints(&places(model)) {
+        let room = usize::from(area.width.saturating_sub(column));
+        if key.len() + word.len() + 3 > room {
+            break;
+        }
+        column = put(buf, area, column, 0, key, model.look.style(Role::Key));
+        column = put(buf, area, column, 0, " ", model.look.style(Role::Quiet));
+        column = put(buf, area, column, 0, word, model.look.style(Role::Quiet)) + 2;
+    }
+}
+
+fn head(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
+    let look = model.look;
+    let context = session.context();
+    let site = context.site();
+    let units = match model.system() {
+        System::Us => "units: US",
+        System::Si => "units: SI",
+    };
+    put_right(buf, area, area.width, 0, units, look.style(Role::Quiet));
+    let mark = match (site.demonstration, context.folder.in_memory()) {
+        (true, true) => "  [demonstration data, held in memory]",
+        (true, false) => "  [demonstration data]",
+        (false, _) => "",
+    };
+    let room = usize::from(area.width).saturating_sub(units.len() + mark.len() + 2);
+    let column = put(buf, area, 0, 0, &cut(&harmless(&site.name), room), look.style(Role::Strong));
+    put(buf, area, column, 0, mark, look.style(Role::Warn));
+    let mut column = 0;
+    for (words, role) in facts(session, context, model.system()) {
+        column = put(buf, area, column, 1, &words, look.style(role)) + 1;
+    }
+}
+
+/// Pool, cast, age, badge, date: in words with the role of each.
+fn facts(session: &Session, context: &Context, system: System) -> Vec<(String, Role)> {
+    let site = context.site();
+    let pool = show(context.profile.pool_m, Dimension::Length, system, 1);
+    let badge = Freshness::of(site, context.age_days);
+    let taken = context.profile.taken.map_or_else(
+        || "cast at an unknown time".to_owned(),
+        |t| format!("cast {}", t.with_timezone(&site.offset).format("%Y-%m-%d %H:%M")),
+    );
+    let age = context.age_days.map_or_else(String::new, |d| format!(", {d:.0} days old"));
+    let badge = match badge {
+        Freshness::Fresh => ("[fresh]".to_owned(), Role::Inside),
+        Freshness::Ageing => ("[~ ageing]".to_owned(), Role::Warn),
+        other => (format!("[! {}]", other.word().to_uppercase()), Role::Outside),
+    };
+    let changed = &session.draft().changed;
+    let edited = |is: bool| if is { " (tried)" } else { "" };
+    vec![
+        (format!("pool {pool}{}", edited(changed.pool_m.is_some())), Role::Plain),
+        (format!("| {taken}{age}"), Role::Plain),
+        badge,
+        (format!("| for {}{}", context.on.format("%Y-%m-%d %H:%M"), edited(changed.on.is_some())), Role::Plain),
+    ]
+}
+
+/// Each tab with its first column and width.
+fn tab_places() -> impl Iterator<Item = (usize, &'static str, u16, u16)> {
+    let mut column = 0;
+    Screen::ALL.iter().enumerate().map(move |(i, (name, _))| {
+        let wide = u16::try_from(name.len()).unwrap_or(0) + 4;
+        let at = column;
+        column += wide + 1;
+        (i + 1, *name, at, wide)
+    })
+}
+
+fn tabs(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
+    let mut end = 0;
+    for (number, name, at, wide) in tab_places() {
+        let here = Screen::ALL.get(number - 1).is_some_and(|s| s.1 == session.screen);
+        let words = if here { format!("[{number} {name}]") } else { format!(" {number} {name} ") };
+        let role = if here { Role::Chosen } else { Role::Plain };
+        put(buf, area, at, 0, &words, model.look.style(role));
+        end = at + wide;
+    }
+    let room = usize::from(area.width.saturating_sub(end + 2));
+    let (words, role) = status(model, session);
+    put_right(buf, area, area.width, 0, &cut(&words, room), model.look.style(role));
+}
+
+/// What is being computed, or why the newest question has no answer.
+fn status(model: &Model, session: &Session) -> (String, Role) {
+    let long = |under: &&Under| (model.clock - under.since).num_milliseconds() >= AT_ONCE_MS;
+    if let Some(under) = model.long.as_ref().filter(long) {
+        let words = format!("ranking {:.0} %, the list is from before; Esc stops", 100.0 * under.done);
+        return (words, Role::Warn);
+    }
+    if model.quick.as_ref().is_some_and(|u| long(&u)) {
+        return ("computing; what is shown is from before".into(), Role::Warn);
+    }
+    if session.wrong.is_some() {
+        return ("! no answer to the last change; what is shown is from before".into(), Role::Outside);
+    }
+    (String::new(), Role::Plain)
+}
+
+/// The number of the tab at a place.
+pub(super) fn tab_at(model: &Model, parts: &Parts, at: Position) -> Option<usize> {
+    model.session()?;
+    if at.y != parts.tabs.y {
+        return None;
+    }
+    tab_places().find(|(_, _, from, wide)| (*from..from + wide).contains(&at.x)).map(|t| t.0)
+}

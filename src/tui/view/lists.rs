@@ -1,0 +1,238 @@
+//! Lists: help, settings, criteria, the drill, sites, problems; and the field that is typed into.
+
+use ratatui::buffer::Buffer;
+use ratatui::layout::{Position, Rect};
+use ratatui::widgets::{Clear, Widget};
+use unicode_width::UnicodeWidthStr;
+
+use crate::problem::{Problem, Weight, harmless};
+use crate::report::caution;
+use crate::units::System;
+
+use super::super::draw::boxed;
+use super::super::keys::{Place, TABLE};
+use super::super::look::{Role, Symbols, Theme};
+use super::super::model::{Choice, Field, Model, Over, Typed};
+use super::write::{cut, put, row_style, wrapped};
+
+/// Lines of the help.
+pub fn help_lines() -> usize {
+    help().len()
+}
+
+/// The help, made from the table of keys: heading or key and words.
+fn help() -> Vec<(String, String)> {
+    let mut out = Vec::new();
+    for (place, heading) in Place::HEADINGS {
+        out.push((heading.to_owned(), String::new()));
+        let told = TABLE.iter().filter(|b| b.place == place && !b.words.is_empty());
+        out.extend(told.map(|b| (format!("  {}", b.shown), b.words.to_owned())));
+    }
+    out.push(("mouse".into(), String::new()));
+    out.push(("  press".into(), "tabs, gates, rows; again on a row types or opens".into()));
+    out.push(("  wheel".into(), "up, down".into()));
+    out.push(("caution".into(), String::new()));
+    out.extend(wrapped(caution(), 64, 0).into_iter().map(|l| (String::new(), l)));
+    out
+}
+
+/// A box in the middle, so many lines and cells inside; the inside.
+fn middle(model: &Model, area: Rect, title: &str, width: u16, lines: usize, buf: &mut Buffer) -> Rect {
+    let width = (width + 4).min(area.width);
+    let height = u16::try_from(lines).unwrap_or(u16::MAX).saturating_add(2).min(area.height.saturating_sub(2));
+    let over = Rect {
+        x: area.x + (area.width - width) / 2,
+        y: area.y + area.height.saturating_sub(height) / 2,
+        width,
+        height,
+    };
+    Clear.render(over, buf);
+    boxed(over, title, buf, model.look)
+}
+
+/// Draws what lies over the screen; where the cursor stands.
+pub(super) fn over(model: &Model, area: Rect, buf: &mut Buffer) -> Option<Position> {
+    // the caution stays in sight whatever lies over the screen
+    let area = Rect { height: area.height.saturating_sub(1), ..area };
+    match model.over.as_ref()? {
+        Over::Help(from) => {
+            let lines = help();
+            let inside = middle(model, area, "help: Up Down scroll, Esc closes", 84, lines.len(), buf);
+            let last = lines.len().saturating_sub(usize::from(inside.height));
+            for (row, (key, words)) in (0..inside.height).zip(lines.iter().skip((*from).min(last))) {
+                let role = if words.is_empty() { Role::Strong } else { Role::Key };
+                put(buf, inside, 0, row, key, model.look.style(role));
+                put(buf, inside, if key.is_empty() { 0 } else { 15 }, row, words, model.look.style(Role::Plain));
+            }
+            None
+        }
+        Over::Settings(at) => {
+            settings(model, *at, area, buf);
+            None
+        }
+        Over::Order(at) => {
+            let session = model.session()?;
+            let lines: Vec<String> = session
+                .draft()
+                .order
+                .iter()
+                .enumerate()
+                .map(|(i, c)| format!("{}. {}", i + 1, criterion_words(*c)))
+                .collect();
+            list(model, "criteria: + - move, Enter done", &lines, *at, area, buf);
+            None
+        }
+        Over::Drill(at) => {
+            let session = model.session()?;
+            let lines: Vec<String> = session
+                .base
+                .site()
+                .outlets
+                .iter()
+                .enumerate()
+                .map(|(i, o)| {
+                    let lost = session.draft().without.contains(&i);
+                    format!("{} {}", if lost { "[lost]" } else { "[    ]" }, harmless(&o.name))
+                })
+                .collect();
+            list(model, "lost-gate drill: Space takes a gate out, Enter done", &lines, *at, area, buf);
+            None
+        }
+        Over::Field(field) => typed(model, field, area, buf),
+    }
+}
+
+/// A criterion as a person says it.
+pub(super) fn criterion_words(criterion: crate::rank::Criterion) -> &'static str {
+    use crate::rank::Criterion as C;
+    match criterion {
+        C::Oxygen => "oxygen below the floor",
+        C::Range => "temperature outside the range",
+        C::Preferred => "distance from the preferred temperature",
+        C::ColdWater => "cold water taken",
+        C::Moves => "moves and crew hours",
+    }
+}
+
+fn list(model: &Model, title: &str, lines: &[String], at: usize, area: Rect, buf: &mut Buffer) {
+    let wide = lines.iter().map(|l| l.width()).chain([title.width()]).max().unwrap_or(0) + 4;
+    let inside = middle(model, area, title, u16::try_from(wide).unwrap_or(u16::MAX), lines.len(), buf);
+    chosen(model, lines, at, inside, buf);
+}
+
+/// Lines of which one is chosen, scrolled so that it is seen.
+fn chosen(model: &Model, lines: &[String], at: usize, inside: Rect, buf: &mut Buffer) {
+    let from = first_line(at, lines.len(), inside.height);
+    for (row, (i, line)) in (0..inside.height).zip(lines.iter().enumerate().skip(from)) {
+        let mark = if i == at { "> " } else { "  " };
+        let column = put(buf, inside, 0, row, mark, model.look.style(Role::Strong));
+        put(buf, inside, column, row, line, model.look.style(Role::Plain));
+        if i == at {
+            row_style(buf, inside, row, model.look.style(Role::Chosen));
+        }
+    }
+}
+
+/// First line shown so that one is seen.
+pub(super) fn first_line(at: usize, count: usize, height: u16) -> usize {
+    let height = usize::from(height.max(1));
+    at.saturating_sub(height / 2).min(count.saturating_sub(height))
+}
+
+fn settings(model: &Model, at: usize, area: Rect, buf: &mut Buffer) {
+    let likes = model.likes;
+    let of = |names: &[(&'static str, Symbols)]| {
+        names.iter().find(|n| n.1 == likes.look.symbols).map_or("", |n| n.0).to_owned()
+    };
+    let theme = Theme::NAMES.iter().find(|n| n.1 == likes.look.theme).map_or("", |n| n.0);
+    let units = match likes.units {
+        None => "as the site",
+        Some(System::Us) => "US: ft, cfs, F",
+        Some(System::Si) => "SI: m, m3/s, C",
+    };
+    let mono = if model.terminal == Theme::Mono { " (this terminal shows none)" } else { "" };
+    let lines = vec![
+        format!("units    {units}"),
+        format!("symbols  {}", of(&Symbols::NAMES)),
+        format!("colours  {theme}{mono}"),
+        format!("mouse    {}", if likes.no_mouse { "left to the terminal" } else { "used here" }),
+    ];
+    list(model, "settings: Space changes, Esc closes", &lines, at, area, buf);
+}
+
+fn typed(model: &Model, field: &Field, area: Rect, buf: &mut Buffer) -> Option<Position> {
+    let title = match field.typed {
+        Typed::Cell(cell) => super::mix::cell_words(model, cell),
+        Typed::Colder => "volume colder than".into(),
+        Typed::Release => "total release to rank at".into(),
+        Typed::NewSite => "folder of the new site".into(),
+    };
+    let inside = middle(model, area, &title, 60, 2, buf);
+    let look = model.look;
+    let width = usize::from(inside.width.saturating_sub(1));
+    let scroll = field.input.visual_scroll(width);
+    let text: String = harmless(field.input.value());
+    let shown: String = text.chars().skip(scroll).collect();
+    row_style(buf, inside, 0, look.style(Role::Field));
+    put(buf, inside, 0, 0, &shown, look.style(Role::Field));
+    match &field.wrong {
+        Some(why) => put(buf, inside, 0, 1, &cut(&format!("! {}", harmless(why)), width), look.style(Role::Outside)),
+        None => put(buf, inside, 0, 1, "Enter sets it, Esc leaves it as it was", look.style(Role::Quiet)),
+    };
+    let column = u16::try_from(field.input.visual_cursor().saturating_sub(scroll)).unwrap_or(0);
+    Some(Position::new(inside.x + column.min(inside.width.saturating_sub(1)), inside.y))
+}
+
+/// Draws the list of sites.
+pub(super) fn sites(model: &Model, list: &[Choice], at: usize, area: Rect, buf: &mut Buffer) {
+    let lines: Vec<String> = list
+        .iter()
+        .map(|c| {
+            let mark = if c.demonstration { "  [demonstration data, held in memory]" } else { "" };
+            format!("{}{mark}", harmless(&c.name))
+        })
+        .collect();
+    chosen(model, &lines, at, area, buf);
+}
+
+/// The line of the list of sites at a place, as long as no line is scrolled away.
+pub(super) fn site_at(count: usize, area: Rect, at: Position) -> Option<usize> {
+    let line = usize::from(at.y.checked_sub(area.y)?);
+    (area.contains(at) && line < count && count <= usize::from(area.height)).then_some(line)
+}
+
+/// Draws every problem of a site that gives no answer.
+pub(super) fn problems(
+    model: &Model,
+    problems: &[Problem],
+    system: System,
+    scroll: usize,
+    kept: bool,
+    area: Rect,
+    buf: &mut Buffer,
+) {
+    let look = model.look;
+    let count = problems.iter().filter(|p| p.weight == Weight::Refused).count();
+    let again = if kept { "your tries are kept" } else { "it opens by itself" };
+    let words = format!("{count} to be mended; when the files are, {again}:");
+    put(buf, area, 0, 0, &words, look.style(Role::Plain));
+    let mut row = 1;
+    for problem in problems.iter().skip(scroll) {
+        let (mark, role) = match problem.weight {
+            Weight::Refused => ("x", Role::Outside),
+            Weight::Flag => ("!", Role::Warn),
+            Weight::Note => ("-", Role::Plain),
+        };
+        let text = problem.text(system);
+        for (i, line) in wrapped(&text, usize::from(area.width).saturating_sub(4), 2).iter().enumerate() {
+            if i == 0 {
+                put(buf, area, 0, row, mark, look.style(role));
+            }
+            put(buf, area, 2, row, line, look.style(if i == 0 { role } else { Role::Plain }));
+            row += 1;
+        }
+        if row >= area.height {
+            return;
+        }
+    }
+}

@@ -1,0 +1,25 @@
+//! The mix screen.
+
+use ratatui::buffer::Buffer;
+use ratatui::layout::{Position, Rect};
+
+use super::super::look::Role;
+use super::super::model::{Cell, Model, Session};
+use super::Hit;
+use super::write::put;
+
+/// Draws the mix screen.
+pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
+    let words = if session.shown.is_some() { "" } else { "computing ..." };
+    put(buf, area, 0, 0, words, model.look.style(Role::Quiet));
+}
+
+/// What lies under a place.
+pub(super) fn hit(_model: &Model, _session: &Session, _area: Rect, _at: Position) -> Option<Hit> {
+    None
+}
+
+/// What a cell is, in words.
+pub(super) fn cell_words(_model: &Model, _cell: Cell) -> String {
+    String::new()
+}

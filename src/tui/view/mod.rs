@@ -1,0 +1,98 @@
+//! Drawing: from the model to cells, and from a place on the screen back to what is drawn there.
+
+mod compact;
+mod frame;
+mod lists;
+mod mix;
+mod pool;
+mod rank;
+mod write;
+
+use ratatui::buffer::Buffer;
+use ratatui::layout::{Position, Rect};
+
+use crate::report::text;
+
+use super::model::{Cell, Model, Screen, Session, Stage};
+
+pub use lists::help_lines;
+
+/// Fewer cells than this and only the main figures are shown.
+const SMALL: (u16, u16) = (72, 20);
+/// Fewer than this and nothing can be.
+const LEAST: (u16, u16) = (24, 6);
+
+/// What lies under a place on the screen.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub enum Hit {
+    /// A tab, from 1.
+    Screen(usize),
+    /// A line of the list of sites.
+    Site(usize),
+    /// An elevation of the picture of the pool, m.
+    Elevation(f64),
+    /// A cell of the board.
+    Cell(Cell),
+    /// A mix of the ranking.
+    Mix(usize),
+}
+
+/// Draws the model; where the cursor stands, while typing.
+pub fn draw(model: &Model, area: Rect, buf: &mut Buffer) -> Option<Position> {
+    let area = area.intersection(*buf.area());
+    if area.width < LEAST.0 || area.height < LEAST.1 {
+        frame::too_small(area, buf);
+        return None;
+    }
+    if area.width < SMALL.0 || area.height < SMALL.1 {
+        compact::draw(model, area, buf);
+    } else {
+        let parts = frame::parts(model, area);
+        frame::draw(model, &parts, buf);
+        match &model.stage {
+            Stage::Opening => {}
+            Stage::Sites { list, at } => lists::sites(model, list, *at, parts.body, buf),
+            Stage::Broken { problems, system, scroll, kept } => {
+                lists::problems(model, problems, *system, *scroll, kept.is_some(), parts.body, buf);
+            }
+            Stage::Site(session) => match session.screen {
+                Screen::Pool => pool::draw(model, session, parts.body, buf),
+                Screen::Mix => mix::draw(model, session, parts.body, buf),
+                Screen::Rank => rank::draw(model, session, parts.body, buf),
+            },
+        }
+    }
+    lists::over(model, area, buf)
+}
+
+/// What lies under a place.
+pub fn hit(model: &Model, column: u16, row: u16) -> Option<Hit> {
+    let area = Rect::new(0, 0, model.size.0, model.size.1);
+    if area.width < SMALL.0 || area.height < SMALL.1 {
+        return None;
+    }
+    let parts = frame::parts(model, area);
+    let at = Position::new(column, row);
+    if let Some(number) = frame::tab_at(model, &parts, at) {
+        return Some(Hit::Screen(number));
+    }
+    match &model.stage {
+        Stage::Sites { list, .. } => lists::site_at(list.len(), parts.body, at).map(Hit::Site),
+        Stage::Site(session) => match session.screen {
+            Screen::Pool => pool::hit(model, session, parts.body, at),
+            Screen::Mix => mix::hit(model, session, parts.body, at),
+            Screen::Rank => rank::hit(model, session, parts.body, at),
+        },
+        Stage::Opening | Stage::Broken { .. } => None,
+    }
+}
+
+/// The answer of the screen as the command gives it.
+pub fn answer_text(session: &Session) -> Option<String> {
+    let shown = session.shown.as_ref()?;
+    match session.screen {
+        Screen::Pool => Some(text::pool(&shown.on.context, &shown.on.pool)),
+        Screen::Mix => Some(text::mix(&shown.on.context, session.tried()?)),
+        Screen::Rank => session.ranked.as_ref().map(|r| text::rank(&r.context, &r.answer)),
+    }
+}

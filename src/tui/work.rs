@@ -1,0 +1,209 @@
+//! What takes time: asked as plain data, computed on a thread, answered as a message. A newer question of one kind
+//! makes the answer to an older one worthless, so it is stopped and dropped.
+
+use std::ops::ControlFlow;
+use std::panic::{AssertUnwindSafe, catch_unwind};
+use std::sync::atomic::{AtomicU64, Ordering};
+use std::sync::mpsc::{Receiver, Sender, channel};
+use std::sync::{Arc, Mutex, PoisonError};
+use std::thread;
+
+use chrono::{DateTime, Utc};
+
+use crate::problem::Problem;
+use crate::tasks::rank::{RankAnswer, RankAsked, rank};
+use crate::tasks::{
+    Asked, Changed, Context, Failure, Given, MixAnswer, PoolAnswer, Solved, mix_given, open, pool, solve,
+};
+use crate::units::System;
+
+use super::model::asked;
+
+/// Who computes: what answers a key, or what takes longer.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Lane {
+    /// Opening, pool and mix.
+    Quick,
+    /// The ranking.
+    Long,
+}
+
+/// What settings are computed on.
+#[derive(Debug, Clone)]
+pub enum On {
+    /// The files as opened, with what is changed; the pool is computed too.
+    Files(Arc<Context>, Changed),
+    /// The same as last time.
+    Same(Arc<Context>),
+}
+
+/// A question.
+#[derive(Debug, Clone)]
+pub enum Work {
+    /// Open a site.
+    Open(Asked, DateTime<Utc>),
+    /// Some settings.
+    Mix {
+        /// What they are computed on.
+        on: On,
+        /// The settings.
+        tries: Vec<Given>,
+        /// The setting to solve for a temperature (C), where that is asked.
+        solve: Option<(Given, f64)>,
+    },
+    /// The ranking, under what is changed.
+    Rank {
+        /// The files as opened.
+        base: Arc<Context>,
+        /// What is changed.
+        changed: Changed,
+        /// What is asked.
+        asked: RankAsked,
+    },
+}
+
+/// What settings are computed on.
+#[derive(Debug, Clone)]
+pub struct Anew {
+    /// The files as opened.
+    pub base: Arc<Context>,
+    /// What is changed.
+    pub changed: Changed,
+    /// Both together.
+    pub context: Arc<Context>,
+    /// The pool.
+    pub pool: PoolAnswer,
+}
+
+/// Settings computed together.
+#[derive(Debug, Clone)]
+pub struct Computed {
+    /// What they were computed on, where that is not what it was last time.
+    pub anew: Option<Anew>,
+    /// Each setting with its answer.
+    pub mixes: Vec<(Given, Result<MixAnswer, Failure>)>,
+    /// The setting solved, where that was asked.
+    pub solved: Option<Result<Solved, Failure>>,
+}
+
+/// An answer.
+#[derive(Debug)]
+pub enum Done {
+    /// A site opened.
+    Opened(Result<Arc<Context>, Failure>),
+    /// Pool and settings.
+    Mixed(Result<Box<Computed>, Failure>),
+    /// The ranking, with what it was made for.
+    Ranked(Result<Box<(Arc<Context>, RankAnswer)>, Failure>),
+}
+
+impl Work {
+    /// Who computes it.
+    pub fn lane(&self) -> Lane {
+        match self {
+            Self::Open(..) | Self::Mix { .. } => Lane::Quick,
+            Self::Rank { .. } => Lane::Long,
+        }
+    }
+
+    /// The answer; `progress` is told how much is done and may stop it.
+    pub fn perform(self, progress: &(dyn Fn(f64) -> ControlFlow<()> + Sync)) -> Done {
+        match self {
+            Self::Open(asked, clock) => Done::Opened(open(&asked, clock).map(Arc::new)),
+            Self::Mix { on, tries, solve } => Done::Mixed(computed(on, tries, solve).map(Box::new)),
+            Self::Rank { base, changed, asked } => Done::Ranked(base.changed(&changed).and_then(|context| {
+                let answer = rank(&context, &asked, progress)?;
+                Ok(Box::new((Arc::new(context), answer)))
+            })),
+        }
+    }
+
+    /// The answer of a question whose computing failed: a fault of the program.
+    fn failed(lane: Lane, opening: bool, why: &str) -> Done {
+        let problem = Problem::refused("fault", why, "please report it with your files");
+        let failure = Failure::Refused(vec![problem], System::default());
+        match lane {
+            Lane::Long => Done::Ranked(Err(failure)),
+            Lane::Quick if opening => Done::Opened(Err(failure)),
+            Lane::Quick => Done::Mixed(Err(failure)),
+        }
+    }
+}
+
+fn computed(on: On, tries: Vec<Given>, wanted: Option<(Given, f64)>) -> Result<Computed, Failure> {
+    let (context, anew) = match on {
+        On::Same(context) => (context, None),
+        On::Files(base, changed) => {
+            let context = Arc::new(base.changed(&changed)?);
+            let pool = pool(&context);
+            (Arc::clone(&context), Some(Anew { base, changed, context, pool }))
+        }
+    };
+    let mixes = tries.into_iter().map(|t| (t.clone(), mix_given(&context, &asked(context.site(), &t)))).collect();
+    let solved = wanted.map(|(given, wanted_c)| solve(&context, &asked(context.site(), &given), wanted_c));
+    Ok(Computed { anew, mixes, solved })
+}
+
+/// What a worker sends.
+#[derive(Debug)]
+pub enum Sent {
+    /// How much of a question is done, 0 to 1.
+    Progress(Lane, u64, f64),
+    /// Its answer.
+    Done(Lane, u64, Done),
+}
+
+/// A thread for questions of one lane: it takes the newest and leaves out those before.
+pub struct Worker {
+    newest: Arc<AtomicU64>,
+    queue: Sender<(u64, Work)>,
+}
+
+impl Worker {
+    /// Starts the thread; answers go to `send`.
+    pub fn start(send: impl Fn(Sent) + Send + Sync + 'static) -> Self {
+        let newest = Arc::new(AtomicU64::new(0));
+        let (queue, questions) = channel();
+        let seen = Arc::clone(&newest);
+        thread::spawn(move || serve(&questions, &seen, &send));
+        Self { newest, queue }
+    }
+
+    /// Asks a question; what is under way in the lane stops.
+    pub fn ask(&self, generation: u64, work: Work) {
+        self.newest.store(generation, Ordering::Relaxed);
+        // a worker that is gone cannot answer; there is nothing to do about it here
+        _ = self.queue.send((generation, work));
+    }
+
+    /// Stops what is under way: no question of this or an earlier generation is answered.
+    pub fn stop(&self, generation: u64) {
+        self.newest.store(generation, Ordering::Relaxed);
+    }
+}
+
+fn serve(questions: &Receiver<(u64, Work)>, newest: &AtomicU64, send: &(impl Fn(Sent) + Send + Sync)) {
+    while let Ok((generation, work)) = questions.recv() {
+        let stale = || newest.load(Ordering::Relaxed) != generation;
+        if stale() {
+            continue;
+        }
+        let (lane, opening) = (work.lane(), matches!(work, Work::Open(..)));
+        let told = Mutex::new(0.0_f64);
+        let progress = |done: f64| {
+            let mut told = told.lock().unwrap_or_else(PoisonError::into_inner);
+            // a hundredth at a time: the screen shows no more
+            if done >= *told + 0.01 {
+                *told = done;
+                send(Sent::Progress(lane, generation, done));
+            }
+            if stale() { ControlFlow::Break(()) } else { ControlFlow::Continue(()) }
+        };
+        // a fault in one question must not take the screens along
+        let done = catch_unwind(AssertUnwindSafe(|| work.perform(&progress)))
+            .unwrap_or_else(|_| Work::failed(lane, opening, "the computing failed: a fault of the program"));
+        if !stale() {
+            send(Sent::Done(lane, generation, done));
+        }
+    }
+}
