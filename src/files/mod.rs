@@ -10,5 +10,6 @@ pub mod folder;
 mod lines;
 pub mod site;
 pub mod table;
+pub mod template;
 pub mod text;
 pub mod yaml;
