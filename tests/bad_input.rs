@@ -14,6 +14,8 @@ mod laws;
 mod limits;
 #[path = "bad_input/mutated.rs"]
 mod mutated;
+#[path = "bad_input/settings.rs"]
+mod settings;
 #[path = "bad_input/site.rs"]
 mod site;
 #[path = "bad_input/table.rs"]

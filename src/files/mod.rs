@@ -8,6 +8,7 @@ pub mod cast;
 pub mod cursor;
 pub mod folder;
 mod lines;
+pub mod settings;
 pub mod site;
 pub mod table;
 pub mod template;
