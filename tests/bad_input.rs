@@ -8,6 +8,8 @@ mod atomic;
 mod cursor;
 #[path = "bad_input/docs.rs"]
 mod docs;
+#[path = "bad_input/found.rs"]
+mod found;
 #[path = "bad_input/laws.rs"]
 mod laws;
 #[path = "bad_input/limits.rs"]
