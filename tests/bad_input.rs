@@ -8,12 +8,16 @@ mod atomic;
 mod cursor;
 #[path = "bad_input/docs.rs"]
 mod docs;
+#[path = "bad_input/found.rs"]
+mod found;
 #[path = "bad_input/laws.rs"]
 mod laws;
 #[path = "bad_input/limits.rs"]
 mod limits;
 #[path = "bad_input/mutated.rs"]
 mod mutated;
+#[path = "bad_input/settings.rs"]
+mod settings;
 #[path = "bad_input/site.rs"]
 mod site;
 #[path = "bad_input/table.rs"]

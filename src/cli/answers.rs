@@ -11,6 +11,7 @@ use crate::mix::TargetStanding;
 use crate::problem::{Problem, any_refused, harmless};
 use crate::report::{json, text};
 use crate::tasks::{self, Asked, Failure, Word};
+use crate::units::System;
 
 use super::arguments::{Cli, Command};
 use super::colour::Colour;
@@ -79,6 +80,7 @@ pub(super) fn answer(cli: &Cli, clock: DateTime<Utc>, progress: Progress) -> Res
             let shown = if *json { json::check(&problems) } else { text::check(site, &problems, system) };
             (shown, if any_refused(&problems) { End::Refused } else { End::Answered })
         }
+        Some(Command::New { folder, units }) => (new(folder, units.system())?, End::Answered),
         Some(Command::Demo { folder }) => (demo(folder)?, End::Answered),
         Some(Command::Completions { shell }) => {
             let mut bytes = Vec::new();
@@ -115,6 +117,17 @@ fn mistyped(word: Option<&str>) -> Result<(), Failure> {
     )))
 }
 
+/// Begins a site in a folder.
+fn new(folder: &Path, system: System) -> Result<String, Stop> {
+    let written = tasks::new(folder, system).map_err(Stop::Machine)?;
+    let list: Vec<String> = written.iter().map(|path| harmless(&path.display().to_string())).collect();
+    Ok(format!(
+        "wrote {}; put your own numbers into site.yaml from top to bottom, then: gatemix check {}\n",
+        list.join(" and "),
+        harmless(&folder.display().to_string())
+    ))
+}
+
 /// Writes the demonstration sites below a folder. A file that is there with other contents is left alone and stops
 /// the writing before it begins, so nothing of the user's is lost.
 fn demo(folder: &Path) -> Result<String, Stop> {
@@ -136,12 +149,7 @@ fn demo(folder: &Path) -> Result<String, Stop> {
     for (path, bytes) in &files {
         let target = folder.join(path);
         if let Some(parent) = target.parent() {
-            std::fs::create_dir_all(parent).map_err(|error| {
-                Stop::Machine(
-                    Problem::refused("cannot-write", error.to_string(), "name a folder you may write to")
-                        .in_file(parent.display().to_string()),
-                )
-            })?;
+            atomic::folder(parent).map_err(Stop::Machine)?;
         }
         atomic::write(&target, bytes).map_err(Stop::Machine)?;
     }

@@ -63,6 +63,14 @@ pub(super) enum Command {
         #[arg(long)]
         json: bool,
     },
+    /// Begin a site of your own: a commented template, to be edited from top to bottom, and an example cast.
+    New {
+        /// Folder of the new site.
+        folder: PathBuf,
+        /// Units of its numbers.
+        #[arg(long, value_enum, default_value_t = Units::Si)]
+        units: Units,
+    },
     /// Write the demonstration sites out as files.
     Demo {
         /// Folder to write them into.
@@ -108,9 +116,18 @@ pub(super) struct Common {
 }
 
 #[derive(Debug, Clone, Copy, ValueEnum)]
-enum Units {
+pub(super) enum Units {
     Us,
     Si,
+}
+
+impl Units {
+    pub(super) fn system(self) -> System {
+        match self {
+            Self::Us => System::Us,
+            Self::Si => System::Si,
+        }
+    }
 }
 
 impl Common {
@@ -121,10 +138,7 @@ impl Common {
             taken: self.taken.clone(),
             pool: self.pool.clone(),
             on: self.on.clone(),
-            units: self.units.map(|u| match u {
-                Units::Us => System::Us,
-                Units::Si => System::Si,
-            }),
+            units: self.units.map(Units::system),
         }
     }
 }

@@ -4,7 +4,7 @@ use std::fs::{self, File, Permissions};
 use std::io::{self, Write};
 use std::path::{Path, PathBuf};
 
-use tempfile::Builder;
+use tempfile::{Builder, NamedTempFile};
 
 use crate::problem::Problem;
 
@@ -20,10 +20,6 @@ const MOST_LINKS: usize = 40;
 /// `cannot-write` naming the file and the cause; the old file is then untouched and nothing is left
 /// behind.
 pub fn write(path: &Path, bytes: &[u8]) -> Result<(), Problem> {
-    let failed = |error: io::Error| {
-        let cure = "check that the folder exists, has room and may be written to";
-        Problem::refused("cannot-write", format!("cannot be written: {error}"), cure)
-    };
     let named = |problem: Problem| problem.in_file(path.display().to_string());
     let target = follow(path).map_err(failed).map_err(named)?;
     let kept = match fs::metadata(&target) {
@@ -43,24 +39,74 @@ pub fn write(path: &Path, bytes: &[u8]) -> Result<(), Problem> {
     replace(&target, bytes, kept).map_err(failed).map_err(named)
 }
 
+/// Writes `bytes` to `path` as [`write`] does, but only where nothing has that name, not even a broken link.
+///
+/// # Errors
+/// `exists` where something has, `cannot-write` otherwise; nothing is left behind.
+pub fn create(path: &Path, bytes: &[u8]) -> Result<(), Problem> {
+    let made = temporary(path, bytes, None).and_then(|temporary| {
+        temporary.persist_noclobber(path).map_err(|error| error.error)?;
+        sync_folder(path);
+        Ok(())
+    });
+    made.map_err(|error| {
+        let problem = if error.kind() == io::ErrorKind::AlreadyExists {
+            Problem::refused("exists", "a file of this name is there; it was left alone", "name another")
+        } else {
+            failed(error)
+        };
+        problem.in_file(path.display().to_string())
+    })
+}
+
+/// Makes a folder and those above it, where they are missing.
+///
+/// # Errors
+/// `cannot-write` naming the folder.
+pub fn folder(path: &Path) -> Result<(), Problem> {
+    fs::create_dir_all(path).map_err(|error| {
+        Problem::refused("cannot-write", error.to_string(), "name a folder you may write to")
+            .in_file(path.display().to_string())
+    })
+}
+
+fn failed(error: io::Error) -> Problem {
+    let cure = "check that the folder exists, has room and may be written to";
+    Problem::refused("cannot-write", format!("cannot be written: {error}"), cure)
+}
+
 fn replace(target: &Path, bytes: &[u8], kept: Option<Permissions>) -> io::Result<()> {
-    let folder = target.parent().filter(|folder| !folder.as_os_str().is_empty()).unwrap_or(Path::new("."));
+    temporary(target, bytes, kept)?.persist(target).map_err(|error| error.error)?;
+    sync_folder(target);
+    Ok(())
+}
+
+/// The folder that holds a file.
+fn above(target: &Path) -> &Path {
+    target.parent().filter(|folder| !folder.as_os_str().is_empty()).unwrap_or(Path::new("."))
+}
+
+/// The bytes on disk beside their target, not yet under its name.
+fn temporary(target: &Path, bytes: &[u8], kept: Option<Permissions>) -> io::Result<NamedTempFile> {
     let mut builder = Builder::new();
     builder.prefix(".gatemix-");
     // asked for at creation, so that the user's umask cuts it as for any new file
     #[cfg(unix)]
     builder.permissions(std::os::unix::fs::PermissionsExt::from_mode(0o666));
-    let mut temporary = builder.tempfile_in(folder)?;
+    let mut temporary = builder.tempfile_in(above(target))?;
     temporary.write_all(bytes)?;
     if let Some(permissions) = kept {
         temporary.as_file().set_permissions(permissions)?;
     }
     temporary.as_file().sync_all()?;
-    temporary.persist(target).map_err(|error| error.error)?;
+    Ok(temporary)
+}
+
+/// Forces a new name to disk.
+fn sync_folder(target: &Path) {
     // the file stands by now; where a network share cannot sync a folder there is nothing to undo
     #[cfg(unix)]
-    let _ = File::open(folder).and_then(|folder| folder.sync_all());
-    Ok(())
+    let _ = File::open(above(target)).and_then(|folder| folder.sync_all());
 }
 
 /// The file that a chain of symbolic links leads to, whether it exists or not.

@@ -15,6 +15,13 @@ use super::cast::{Told, cast};
 use super::text::{self, Format, Source};
 use super::yaml::Document;
 
+mod found;
+
+pub use found::{Found, sites_in, stamps};
+
+/// The file that makes a folder a site.
+const SITE_FILE: &str = "site.yaml";
+
 static DEMONSTRATIONS: Dir<'static> = include_dir!("$CARGO_MANIFEST_DIR/sites");
 
 /// The demonstration sites that travel inside the binary, by name; the first one opens when nothing is named.
@@ -101,11 +108,7 @@ impl Folder {
         if !path.exists() && demonstrations().contains(&named) {
             return Self::demonstration(named);
         }
-        let (root, file) = if path.is_dir() {
-            (path.to_owned(), path.join("site.yaml"))
-        } else {
-            (path.parent().map(Path::to_owned).unwrap_or_default(), path.to_owned())
-        };
+        let (root, file) = places(path);
         if path.is_dir() && !file.exists() {
             let cure = "name a site folder, or write the demonstration sites with `gatemix demo`";
             return Err(Problem::refused("no-site", "the folder has no site.yaml", cure)
@@ -120,7 +123,7 @@ impl Folder {
     /// # Errors
     /// Its problems; there are none in a released binary, which a test holds.
     pub fn demonstration(name: &str) -> Result<Self, Refused> {
-        let file = format!("{name}/site.yaml");
+        let file = format!("{name}/{SITE_FILE}");
         let source = inside(&file).ok_or_else(|| {
             Problem::refused(
                 "no-demonstration",
@@ -207,11 +210,8 @@ impl Folder {
                 .filter_map(|path| Some((path.clone(), inside(&path)?)))
                 .collect(),
             Root::Disk(root) => {
-                let Ok(entries) = std::fs::read_dir(root.join("profiles")) else { return Vec::new() };
-                let mut paths: Vec<PathBuf> =
-                    entries.filter_map(|e| Some(e.ok()?.path())).filter(|p| is_csv(p)).collect();
-                paths.sort();
-                paths.into_iter().map(|p| (p.display().to_string(), text::read(&p, Format::Csv))).collect()
+                let read = |p: PathBuf| (p.display().to_string(), text::read(&p, Format::Csv));
+                cast_paths(root).into_iter().map(read).collect()
             }
         }
     }
@@ -335,6 +335,24 @@ impl Folder {
         let digits = |b: &u8| [b >> 4, b & 15].map(|d| char::from_digit(d.into(), 16).unwrap_or('0'));
         hash.finalize().iter().take(6).flat_map(digits).collect()
     }
+}
+
+/// The folder and the site file that a path on disk names: either of them.
+fn places(path: &Path) -> (PathBuf, PathBuf) {
+    if path.is_dir() {
+        (path.to_owned(), path.join(SITE_FILE))
+    } else {
+        (path.parent().map(Path::to_owned).unwrap_or_default(), path.to_owned())
+    }
+}
+
+/// The files of the casts of a site folder, in order.
+fn cast_paths(root: &Path) -> Vec<PathBuf> {
+    let entries = std::fs::read_dir(root.join("profiles")).into_iter().flatten();
+    let mut paths: Vec<PathBuf> =
+        entries.filter_map(|e| Some(e.ok()?.path())).filter(|p| is_csv(p)).collect();
+    paths.sort();
+    paths
 }
 
 /// The last part of a path, as the user lists it.

@@ -3,10 +3,13 @@
 //! A task takes what the user asked as text where its meaning depends on the site (its units, its gates), and
 //! the clock from its caller.
 
+use std::path::{Path, PathBuf};
+
 use chrono::{DateTime, FixedOffset, SubsecRound, Utc};
 
 use crate::files::cast::{TIME_CURE, parse_time};
 use crate::files::folder::{self, Folder, demonstrations};
+use crate::files::template;
 use crate::files::text::Source;
 use crate::problem::Problem;
 use crate::profile::Profile;
@@ -46,6 +49,14 @@ pub enum Failure {
 /// The answer of `check`: everything said of a site folder, and the units to say it in.
 pub fn check(named: &str) -> (Vec<Problem>, System) {
     folder::check(named)
+}
+
+/// Writes a site to start from into a folder, in a system of units, and tells the files written.
+///
+/// # Errors
+/// A file of one of their names is there, or the machine cannot write; nothing of the user's is touched.
+pub fn new(folder: &Path, system: System) -> Result<Vec<PathBuf>, Problem> {
+    template::write(folder, system)
 }
 
 /// What every task is asked with.

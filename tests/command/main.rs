@@ -9,6 +9,7 @@ mod escapes;
 mod exits;
 mod limits;
 mod loggers;
+mod new;
 mod rank;
 mod rank_answers;
 mod refused;

@@ -1,0 +1,53 @@
+//! Which sites a folder holds, and whether the files of one have changed.
+
+use std::fs::{self, DirEntry};
+use std::path::{Path, PathBuf};
+use std::time::SystemTime;
+
+use super::{SITE_FILE, cast_paths, demonstrations, places};
+
+/// A site among others.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct Found {
+    /// Name of its folder, as it is: not yet made harmless for a terminal.
+    pub name: String,
+    /// Its folder.
+    pub path: PathBuf,
+}
+
+/// The sites in the direct subfolders of a folder, ordered by name; hidden ones are passed over, links are followed.
+/// None in a folder that is a site itself, or that cannot be read.
+pub fn sites_in(path: &Path) -> Vec<Found> {
+    if path.join(SITE_FILE).exists() {
+        return Vec::new();
+    }
+    let site = |entry: DirEntry| {
+        let name = entry.file_name().to_string_lossy().into_owned();
+        let path = entry.path();
+        (!name.starts_with('.') && path.join(SITE_FILE).is_file()).then_some(Found { name, path })
+    };
+    let entries = fs::read_dir(path).into_iter().flatten();
+    let mut sites: Vec<Found> = entries.filter_map(|entry| site(entry.ok()?)).collect();
+    sites.sort_by(|a, b| a.name.cmp(&b.name).then_with(|| a.path.cmp(&b.path)));
+    sites
+}
+
+/// When each file that an answer on a site can come from was last written, and its length in bytes: the site file,
+/// sound or not, and every cast of the folder. Two lists differ where a file changed, came or went. Empty for a
+/// demonstration held in memory.
+pub fn stamps(named: &str) -> Vec<(PathBuf, SystemTime, u64)> {
+    let path = Path::new(named);
+    if !path.exists() && demonstrations().contains(&named) {
+        return Vec::new();
+    }
+    let (root, file) = places(path);
+    [file]
+        .into_iter()
+        .chain(cast_paths(&root))
+        .filter_map(|path| {
+            let about = fs::metadata(&path).ok()?;
+            // where a file system keeps no times the length has to do
+            Some((path, about.modified().unwrap_or(SystemTime::UNIX_EPOCH), about.len()))
+        })
+        .collect()
+}
