@@ -11,10 +11,10 @@ use crate::mix::TargetStanding;
 use crate::problem::{Problem, any_refused, harmless};
 use crate::report::{json, text};
 use crate::tasks::{self, Asked, Failure, Word};
+use crate::tui;
 use crate::units::System;
 
 use super::arguments::{Cli, Command};
-use super::colour::Colour;
 use super::endings::{End, Stop};
 use super::progress::Progress;
 
@@ -28,15 +28,13 @@ pub(super) fn answer(cli: &Cli, clock: DateTime<Utc>, progress: Progress) -> Res
         None => {
             mistyped(cli.folder.as_deref())?;
             let asked = Asked { site: cli.folder.clone(), ..Asked::default() };
-            let context = tasks::open(&asked, clock)?;
-            let pool = tasks::pool(&context);
-            let shown = match tasks::mix(&context, &[]) {
-                Ok(mix) => text::both(&context, &pool, &mix),
-                // no setting now in flows: the pool alone is the answer
-                Err(Failure::Usage(_)) => text::pool(&context, &pool),
-                Err(failure) => return Err(failure.into()),
+            return match tui::run(asked) {
+                Ok(()) => Ok((Vec::new(), End::Answered)),
+                Err(problem) if problem.kind == "no-terminal" => {
+                    Err(Failure::Usage(problem.advice(System::default())).into())
+                }
+                Err(problem) => Err(Stop::Machine(problem)),
             };
-            (Colour::Auto.of(&shown), End::Answered)
         }
         Some(Command::Pool { common }) => {
             let context = tasks::open(&common.asked(), clock)?;

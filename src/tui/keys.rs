@@ -146,7 +146,14 @@ pub struct Binding {
     pub action: Action,
 }
 
-const fn on(place: Place, key: KeyCode, shown: &'static str, hint: &'static str, words: &'static str, action: Action) -> Binding {
+const fn on(
+    place: Place,
+    key: KeyCode,
+    shown: &'static str,
+    hint: &'static str,
+    words: &'static str,
+    action: Action,
+) -> Binding {
     Binding { place, key, ctrl: false, shown, hint, words, action }
 }
 
@@ -198,7 +205,14 @@ pub const TABLE: &[Binding] = &[
     on(P::Mix, Char(' '), "Space", "open/shut", "open the gate fully, or shut it", A::Toggle),
     on(P::Mix, Char('u'), "u", "undo", "take the last change back", A::Undo),
     on(P::Mix, Char('r'), "r", "redo", "make it again", A::Redo),
-    on(P::Mix, Char('p'), "p", "solve", "split the two largest flows for the preferred temperature", A::Solve),
+    on(
+        P::Mix,
+        Char('p'),
+        "p",
+        "solve",
+        "split the two largest flows for the preferred temperature",
+        A::Solve,
+    ),
     on(P::Mix, Char('n'), "n", "keep", "keep this try and begin another like it", A::NewTry),
     on(P::Mix, Char('['), "[ ]", "tries", "the try before, the try after", A::Before),
     on(P::Mix, Char(']'), "", "", "", A::After),
@@ -241,7 +255,7 @@ pub const TABLE: &[Binding] = &[
 ];
 
 /// What a key asks for in the first of some places that knows it. A key let go asks for nothing.
-pub fn action(event: &KeyEvent, places: &[Place]) -> Option<Action> {
+pub(super) fn action(event: &KeyEvent, places: &[Place]) -> Option<Action> {
     if event.kind == KeyEventKind::Release {
         return None;
     }
@@ -252,7 +266,7 @@ pub fn action(event: &KeyEvent, places: &[Place]) -> Option<Action> {
 }
 
 /// Hints for some places, the first first: key and word.
-pub fn hints(places: &[Place]) -> Vec<(&'static str, &'static str)> {
+pub(super) fn hints(places: &[Place]) -> Vec<(&'static str, &'static str)> {
     let of = |place: &Place| {
         let place = *place;
         TABLE.iter().filter(move |b| b.place == place && !b.hint.is_empty())

@@ -4,12 +4,15 @@ pub mod draw;
 mod keys;
 mod look;
 pub mod model;
+mod run;
+mod terminal;
 mod update;
 mod view;
 mod work;
 
 pub use keys::{Action, Binding, Place, TABLE};
 pub use look::{Look, Role, Symbols, Theme};
+pub use run::run;
 pub use update::{Effect, Event, begin, places, update};
 pub use view::{Hit, draw as draw_model, hit};
 pub use work::{Anew, Computed, Done, Lane, On, Sent, Work};

@@ -1,6 +1,7 @@
 //! The loop: what arrives becomes a message, what the update asks for is done, the model is drawn.
 
 use std::io;
+use std::path::Path;
 use std::sync::atomic::{AtomicBool, Ordering};
 use std::sync::mpsc::{Receiver, RecvTimeoutError, Sender, channel};
 use std::sync::{Arc, Mutex, PoisonError};
@@ -48,7 +49,8 @@ pub fn run(asked: Asked) -> Result<(), Problem> {
             "run it in a terminal, or print an answer: gatemix pool, gatemix mix, gatemix rank",
         ));
     }
-    on_terminal(asked).map_err(|error| Problem::refused("terminal", error.to_string(), "try another terminal"))
+    on_terminal(asked)
+        .map_err(|error| Problem::refused("terminal", error.to_string(), "try another terminal"))
 }
 
 fn on_terminal(asked: Asked) -> io::Result<()> {
@@ -57,18 +59,13 @@ fn on_terminal(asked: Asked) -> io::Result<()> {
     let (send, arrivals) = channel();
     let mut taken = Taken::take(!likes.no_mouse)?;
     let mut model = Model::new(asked, likes, terminal::colours(), taken.size(), Utc::now());
-    model.message =
-        problems.first().map(|p| Message { words: p.text(System::default()), wrong: true });
+    model.message = problems.first().map(|p| Message { words: p.text(System::default()), wrong: true });
     let worker = |send: &Sender<Arrived>| {
         let send = send.clone();
         Worker::start(move |sent| _ = send.send(Arrived::Event(Event::Sent(sent))))
     };
-    let mut outside = Outside {
-        quick: worker(&send),
-        long: worker(&send),
-        watched: Arc::default(),
-        send: send.clone(),
-    };
+    let mut outside =
+        Outside { quick: worker(&send), long: worker(&send), watched: Arc::default(), send: send.clone() };
     watch(&outside.watched, send.clone());
     let paused = Arc::new(AtomicBool::new(false));
     listen(send, Arc::clone(&paused))?;
@@ -99,7 +96,7 @@ fn on_terminal(asked: Asked) -> io::Result<()> {
 /// What is done first: a list for a folder of sites, else the site.
 fn start(model: &mut Model) -> Vec<Effect> {
     let named = model.asked.site.clone();
-    let folder = named.filter(|named| !sites_in(named).is_empty());
+    let folder = named.filter(|named| !sites_in(Path::new(named)).is_empty());
     match folder {
         Some(folder) => {
             model.folder = Some(folder.clone());
@@ -153,7 +150,7 @@ impl Outside {
             }
             Effect::List(folder) => self.answer(Event::Sites(sites(folder.as_deref()))),
             Effect::NewSite(folder, system) => {
-                let made = tasks::new(std::path::Path::new(&folder), system).map(|_| folder);
+                let made = tasks::new(Path::new(&folder), system).map(|_| folder);
                 self.answer(Event::Made(made));
             }
             Effect::Copy(text) => taken.copy(&text)?,
@@ -184,7 +181,7 @@ impl Outside {
 
 /// The sites of a folder, then the demonstrations.
 fn sites(folder: Option<&str>) -> Vec<Choice> {
-    let found = sites_in(folder.unwrap_or(".")).into_iter().map(|f| Choice {
+    let found = sites_in(Path::new(folder.unwrap_or("."))).into_iter().map(|f| Choice {
         name: f.name,
         named: f.path.display().to_string(),
         demonstration: false,

@@ -1,10 +1,14 @@
 //! The terminal: taken and given back in one place, whatever ends the program.
 
-use std::io::{self, IsTerminal, Stdout, Write, stdin, stdout};
+use std::cell::RefCell;
+use std::io::{self, IsTerminal, Write, stdin, stdout};
 use std::panic;
+use std::rc::Rc;
 use std::thread;
 
-use crossterm::event::{DisableBracketedPaste, DisableMouseCapture, EnableBracketedPaste, EnableMouseCapture};
+use crossterm::event::{
+    DisableBracketedPaste, DisableMouseCapture, EnableBracketedPaste, EnableMouseCapture,
+};
 use crossterm::terminal::{
     BeginSynchronizedUpdate, EndSynchronizedUpdate, EnterAlternateScreen, LeaveAlternateScreen,
     disable_raw_mode, enable_raw_mode,
@@ -36,7 +40,8 @@ pub(super) fn colours() -> Theme {
 
 /// What its letters can be, where the user likes nothing else: a plain locale has plain characters (POSIX).
 pub(super) fn symbols() -> Symbols {
-    let locale = ["LC_ALL", "LC_CTYPE", "LANG"].iter().find_map(|n| std::env::var(n).ok().filter(|v| !v.is_empty()));
+    let locale =
+        ["LC_ALL", "LC_CTYPE", "LANG"].iter().find_map(|n| std::env::var(n).ok().filter(|v| !v.is_empty()));
     match locale.as_deref() {
         Some("C" | "POSIX") => Symbols::Ascii,
         _ => Symbols::default(),
@@ -44,14 +49,12 @@ pub(super) fn symbols() -> Symbols {
 }
 
 /// A writer that holds everything until a frame is whole.
-struct Held {
-    bytes: Vec<u8>,
-    out: Stdout,
-}
+#[derive(Clone, Default)]
+struct Held(Rc<RefCell<Vec<u8>>>);
 
 impl Write for Held {
     fn write(&mut self, bytes: &[u8]) -> io::Result<usize> {
-        self.bytes.extend_from_slice(bytes);
+        self.0.borrow_mut().extend_from_slice(bytes);
         Ok(bytes.len())
     }
 
@@ -63,32 +66,35 @@ impl Write for Held {
 
 impl Held {
     /// Sends what is held in one write, as one change of the screen where the terminal knows that.
-    fn send(&mut self) -> io::Result<()> {
-        if self.bytes.is_empty() {
+    fn send(&self) -> io::Result<()> {
+        let held = self.0.take();
+        if held.is_empty() {
             return Ok(());
         }
-        let mut frame = Vec::with_capacity(self.bytes.len() + 32);
+        let mut frame = Vec::with_capacity(held.len() + 32);
         queue!(frame, BeginSynchronizedUpdate)?;
-        frame.append(&mut self.bytes);
+        frame.extend(held);
         queue!(frame, EndSynchronizedUpdate)?;
-        self.out.write_all(&frame)?;
-        self.out.flush()
+        let mut out = stdout().lock();
+        out.write_all(&frame)?;
+        out.flush()
     }
 }
 
 /// The terminal while the screens have it; given back when dropped.
 pub(super) struct Taken {
     terminal: Terminal<CrosstermBackend<Held>>,
+    held: Held,
     mouse: bool,
 }
 
 impl Taken {
     /// Takes the terminal.
     pub(super) fn take(mouse: bool) -> io::Result<Self> {
-        let held = Held { bytes: Vec::new(), out: stdout() };
+        let held = Held::default();
         enter(mouse)?;
         give_back_on_panic();
-        Ok(Self { terminal: Terminal::new(CrosstermBackend::new(held))?, mouse })
+        Ok(Self { terminal: Terminal::new(CrosstermBackend::new(held.clone()))?, held, mouse })
     }
 
     /// Columns and rows.
@@ -99,14 +105,13 @@ impl Taken {
     /// Draws a frame and sends it in one write.
     pub(super) fn draw(&mut self, draw: impl FnOnce(&mut ratatui::Frame)) -> io::Result<()> {
         self.terminal.draw(draw)?;
-        self.terminal.backend_mut().writer_mut().send()
+        self.held.send()
     }
 
     /// Puts text on the clipboard of the terminal, where it takes that.
     pub(super) fn copy(&mut self, text: &str) -> io::Result<()> {
-        let held = self.terminal.backend_mut().writer_mut();
-        queue!(held, CopyToClipboard::to_clipboard_from(text))?;
-        held.send()
+        queue!(self.held, CopyToClipboard::to_clipboard_from(text))?;
+        self.held.send()
     }
 
     /// Takes the mouse, or leaves it to the terminal.

@@ -139,7 +139,8 @@ fn computed(on: On, tries: Vec<Given>, wanted: Option<(Given, f64)>) -> Result<C
             (Arc::clone(&context), Some(Anew { base, changed, context, pool }))
         }
     };
-    let mixes = tries.into_iter().map(|t| (t.clone(), mix_given(&context, &asked(context.site(), &t)))).collect();
+    let mixes =
+        tries.into_iter().map(|t| (t.clone(), mix_given(&context, &asked(context.site(), &t)))).collect();
     let solved = wanted.map(|(given, wanted_c)| solve(&context, &asked(context.site(), &given), wanted_c));
     Ok(Computed { anew, mixes, solved })
 }
@@ -154,14 +155,14 @@ pub enum Sent {
 }
 
 /// A thread for questions of one lane: it takes the newest and leaves out those before.
-pub struct Worker {
+pub(super) struct Worker {
     newest: Arc<AtomicU64>,
     queue: Sender<(u64, Work)>,
 }
 
 impl Worker {
     /// Starts the thread; answers go to `send`.
-    pub fn start(send: impl Fn(Sent) + Send + Sync + 'static) -> Self {
+    pub(super) fn start(send: impl Fn(Sent) + Send + Sync + 'static) -> Self {
         let newest = Arc::new(AtomicU64::new(0));
         let (queue, questions) = channel();
         let seen = Arc::clone(&newest);
@@ -170,14 +171,14 @@ impl Worker {
     }
 
     /// Asks a question; what is under way in the lane stops.
-    pub fn ask(&self, generation: u64, work: Work) {
+    pub(super) fn ask(&self, generation: u64, work: Work) {
         self.newest.store(generation, Ordering::Relaxed);
         // a worker that is gone cannot answer; there is nothing to do about it here
         _ = self.queue.send((generation, work));
     }
 
     /// Stops what is under way: no question of this or an earlier generation is answered.
-    pub fn stop(&self, generation: u64) {
+    pub(super) fn stop(&self, generation: u64) {
         self.newest.store(generation, Ordering::Relaxed);
     }
 }

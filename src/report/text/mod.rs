@@ -58,17 +58,6 @@ pub fn rank(context: &Context, answer: &RankAnswer) -> String {
     out
 }
 
-/// The answers of `pool` and of `mix` for the setting now, on one page.
-pub fn both(context: &Context, pool: &PoolAnswer, mix: &MixAnswer) -> String {
-    let mut out = head(context, &pool.fingerprint);
-    out.push_str(&pool::layers(context, pool));
-    out.push_str(&mix::body(context, mix));
-    out.push_str(&cast_flags(context, &pool.against_previous));
-    out.push_str(&mix::not_checked(mix));
-    out.push_str(&wrapped(caution(), 0));
-    out
-}
-
 /// The answer of `check`: every problem, flag and note, and a closing line.
 pub fn check(named: &str, problems: &[Problem], system: System) -> String {
     let mut out = String::new();

@@ -103,7 +103,8 @@ impl Cell {
         let row = rows.iter().position(|r| *r == self.row()).unwrap_or(0);
         let cells = self.row().cells(site);
         let column = cells.iter().position(|c| *c == self).unwrap_or(0);
-        let to = |at: usize, by: isize, count: usize| at.saturating_add_signed(by).min(count.saturating_sub(1));
+        let to =
+            |at: usize, by: isize, count: usize| at.saturating_add_signed(by).min(count.saturating_sub(1));
         let cells = rows.get(to(row, down, rows.len())).map_or_else(Vec::new, |r| r.cells(site));
         cells.get(to(column, right, cells.len())).copied().unwrap_or(self)
     }

@@ -61,10 +61,18 @@ impl Field {
             parse(text, dimension, system.unit(dimension)).map_err(|error| error.to_string())
         };
         let above_zero = |value: f64, what: &str| {
-            if value < 0.0 { Err(format!("{what} cannot be negative")) } else { Ok(Value::Number(Some(value))) }
+            if value < 0.0 {
+                Err(format!("{what} cannot be negative"))
+            } else {
+                Ok(Value::Number(Some(value)))
+            }
         };
         let bound = |dimension: Dimension| {
-            if text.is_empty() { Ok(Value::Number(None)) } else { number(dimension).map(|v| Value::Number(Some(v))) }
+            if text.is_empty() {
+                Ok(Value::Number(None))
+            } else {
+                number(dimension).map(|v| Value::Number(Some(v)))
+            }
         };
         match self.typed {
             Typed::NewSite if text.is_empty() => Err("type the name of a folder".into()),
@@ -103,7 +111,8 @@ impl Field {
 }
 
 fn opening(outlet: &Outlet, text: &str) -> Result<Value, String> {
-    if let Some(position) = outlet.positions.iter().find(|p| p.name == text && p.name.parse::<f64>().is_err()) {
+    if let Some(position) = outlet.positions.iter().find(|p| p.name == text && p.name.parse::<f64>().is_err())
+    {
         return Ok(Value::Number(Some(position.opening)));
     }
     let unit = System::Si.unit(Dimension::Percent);
@@ -117,7 +126,9 @@ fn opening(outlet: &Outlet, text: &str) -> Result<Value, String> {
 
 fn pool(site: Option<&Site>, pool_m: f64) -> Result<Value, String> {
     match site {
-        Some(site) if pool_m > site.pool.bed_m && pool_m <= site.pool.top_m() => Ok(Value::Number(Some(pool_m))),
+        Some(site) if pool_m > site.pool.bed_m && pool_m <= site.pool.top_m() => {
+            Ok(Value::Number(Some(pool_m)))
+        }
         _ => Err("outside the pool table".into()),
     }
 }

@@ -6,9 +6,9 @@ use crate::tasks::rank::RankAnswer;
 use crate::tasks::{Context, Failure, Given, MixAnswer};
 
 use super::super::work::Anew;
+use super::Screen;
 use super::board::{Cell, rows};
 use super::draft::{Draft, History};
-use super::Screen;
 
 /// Pool and settings as they were computed together.
 #[derive(Debug, Clone)]
@@ -90,7 +90,9 @@ impl Session {
     /// A site just opened: the setting now is tried first.
     pub fn begin(base: Arc<Context>) -> Self {
         let now = Given::now(base.site());
-        let cell = rows(base.site(), base.on.date_naive()).first().map_or(Cell::Pool, |row| row.cells(base.site())[0]);
+        let cell = rows(base.site(), base.on.date_naive())
+            .first()
+            .map_or(Cell::Pool, |row| row.cells(base.site())[0]);
         Self {
             history: History::begin(Draft::begin(now)),
             base,

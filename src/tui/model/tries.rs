@@ -82,14 +82,6 @@ fn has_openings(outlet: &Outlet) -> bool {
     outlet.well.is_some() || !outlet.positions.is_empty()
 }
 
-/// Opening of an outlet in a setting, 0 to 1, and its flow where that is given, m3/s.
-pub(super) fn at(given: &Given, outlet: usize) -> (f64, Option<f64>) {
-    if let Some(flow) = given.flows.iter().find(|g| g.outlet == outlet) {
-        return (flow.opening.unwrap_or(1.0), Some(flow.flow_m3s));
-    }
-    (given.open.iter().find(|g| g.0 == outlet).map_or(0.0, |g| g.1), None)
-}
-
 /// Sets an opening, 0 to 1.
 pub fn set_opening(site: &Site, given: &mut Given, outlet: usize, opening: f64) {
     let shut = opening < SAME_OPENING;

@@ -98,7 +98,8 @@ fn mixed(model: &mut Model, mixed: Result<Box<Computed>, Failure>) -> Vec<Effect
     session.wrong = None;
     let before = session.shown.take();
     // answers of last time hold where nothing but the tries changed
-    let kept = if anew.is_some() { Vec::new() } else { before.as_ref().map_or_else(Vec::new, |s| s.mixes.clone()) };
+    let kept =
+        if anew.is_some() { Vec::new() } else { before.as_ref().map_or_else(Vec::new, |s| s.mixes.clone()) };
     let on = anew.or_else(|| before.map(|s| s.on));
     let answer = |given: &crate::tasks::Given| {
         let of = |list: &[(crate::tasks::Given, _)]| list.iter().find(|(g, _)| g == given).cloned();

@@ -11,7 +11,7 @@ use super::{Effect, change, open, say};
 /// Lines of a page.
 const PAGE: usize = 10;
 /// Lines of the settings.
-pub(crate) const SETTINGS: [&str; 4] = ["units", "symbols", "colours", "mouse"];
+const SETTINGS: [&str; 4] = ["units", "symbols", "colours", "mouse"];
 
 /// Asks for the list of sites.
 pub(super) fn sites(model: &mut Model) -> Vec<Effect> {
@@ -76,7 +76,9 @@ fn moved(at: usize, action: Action, count: usize) -> usize {
 fn over(model: &mut Model, action: Action) -> Vec<Effect> {
     let Some(over) = model.over.clone() else { return Vec::new() };
     match (over, action) {
-        (Over::Help(_) | Over::Settings(_) | Over::Order(_) | Over::Drill(_), Action::Back) => model.over = None,
+        (Over::Help(_) | Over::Settings(_) | Over::Order(_) | Over::Drill(_), Action::Back) => {
+            model.over = None
+        }
         (Over::Help(_), Action::Enter) => model.over = None,
         (Over::Help(at), _) => {
             let lines = super::super::view::help_lines();

@@ -219,7 +219,9 @@ fn nudged(model: &mut Model, nudge: Nudge) -> Vec<Effect> {
             return to.map_or_else(Vec::new, |to| put(model, cell, &Value::Moment(to)));
         }
         Cell::Opening(i) => next_opening(&session.base.site().outlets[i], now.unwrap_or(0.0), nudge),
-        Cell::Flow(_) | Cell::Total(_) | Cell::Release => of(FLOW, Dimension::Flow)(now.unwrap_or(0.0)).max(0.0),
+        Cell::Flow(_) | Cell::Total(_) | Cell::Release => {
+            of(FLOW, Dimension::Flow)(now.unwrap_or(0.0)).max(0.0)
+        }
         Cell::Pool => {
             let pool = &session.base.site().pool;
             // the surface must stay above the bed and within the table

@@ -42,6 +42,8 @@ pub enum Event {
     Sites(Vec<Choice>),
     /// A new site was made in a folder, or why not.
     Made(Result<String, Problem>),
+    /// Something that could not be done.
+    Said(Problem),
 }
 
 /// What is to be done outside the model.
@@ -102,7 +104,7 @@ pub fn update(model: &mut Model, event: Event) -> Vec<Effect> {
         }
         Event::Sites(list) => list::listed(model, list),
         Event::Made(Ok(folder)) => open(model, folder),
-        Event::Made(Err(problem)) => {
+        Event::Made(Err(problem)) | Event::Said(problem) => {
             let system = model.system();
             complain(model, problem.text(system));
             Vec::new()
@@ -134,8 +136,8 @@ pub fn places(model: &Model) -> Vec<Place> {
 
 fn pressed(model: &mut Model, key: &KeyEvent) -> Vec<Effect> {
     // these two work while typing too
-    if let Some(action @ (Action::Quit | Action::Suspend)) =
-        action(key, &[Place::Everywhere]).filter(|_| key.modifiers.contains(crossterm::event::KeyModifiers::CONTROL))
+    if let Some(action @ (Action::Quit | Action::Suspend)) = action(key, &[Place::Everywhere])
+        .filter(|_| key.modifiers.contains(crossterm::event::KeyModifiers::CONTROL))
     {
         return vec![if action == Action::Quit { Effect::Quit } else { Effect::Suspend }];
     }

@@ -151,7 +151,10 @@ fn facts(session: &Session, context: &Context, system: System) -> Vec<(String, R
         (format!("pool {pool}{}", edited(changed.pool_m.is_some())), Role::Plain),
         (format!("| {taken}{age}"), Role::Plain),
         badge,
-        (format!("| for {}{}", context.on.format("%Y-%m-%d %H:%M"), edited(changed.on.is_some())), Role::Plain),
+        (
+            format!("| for {}{}", context.on.format("%Y-%m-%d %H:%M"), edited(changed.on.is_some())),
+            Role::Plain,
+        ),
     ]
 }
 

@@ -16,7 +16,7 @@ use super::super::model::{Choice, Field, Model, Over, Typed};
 use super::write::{cut, put, row_style, wrapped};
 
 /// Lines of the help.
-pub fn help_lines() -> usize {
+pub(in crate::tui) fn help_lines() -> usize {
     help().len()
 }
 
@@ -39,7 +39,8 @@ fn help() -> Vec<(String, String)> {
 /// A box in the middle, so many lines and cells inside; the inside.
 fn middle(model: &Model, area: Rect, title: &str, width: u16, lines: usize, buf: &mut Buffer) -> Rect {
     let width = (width + 4).min(area.width);
-    let height = u16::try_from(lines).unwrap_or(u16::MAX).saturating_add(2).min(area.height.saturating_sub(2));
+    let height =
+        u16::try_from(lines).unwrap_or(u16::MAX).saturating_add(2).min(area.height.saturating_sub(2));
     let over = Rect {
         x: area.x + (area.width - width) / 2,
         y: area.y + area.height.saturating_sub(height) / 2,
@@ -62,7 +63,14 @@ pub(super) fn over(model: &Model, area: Rect, buf: &mut Buffer) -> Option<Positi
             for (row, (key, words)) in (0..inside.height).zip(lines.iter().skip((*from).min(last))) {
                 let role = if words.is_empty() { Role::Strong } else { Role::Key };
                 put(buf, inside, 0, row, key, model.look.style(role));
-                put(buf, inside, if key.is_empty() { 0 } else { 15 }, row, words, model.look.style(Role::Plain));
+                put(
+                    buf,
+                    inside,
+                    if key.is_empty() { 0 } else { 15 },
+                    row,
+                    words,
+                    model.look.style(Role::Plain),
+                );
             }
             None
         }
@@ -176,7 +184,9 @@ fn typed(model: &Model, field: &Field, area: Rect, buf: &mut Buffer) -> Option<P
     row_style(buf, inside, 0, look.style(Role::Field));
     put(buf, inside, 0, 0, &shown, look.style(Role::Field));
     match &field.wrong {
-        Some(why) => put(buf, inside, 0, 1, &cut(&format!("! {}", harmless(why)), width), look.style(Role::Outside)),
+        Some(why) => {
+            put(buf, inside, 0, 1, &cut(&format!("! {}", harmless(why)), width), look.style(Role::Outside))
+        }
         None => put(buf, inside, 0, 1, "Enter sets it, Esc leaves it as it was", look.style(Role::Quiet)),
     };
     let column = u16::try_from(field.input.visual_cursor().saturating_sub(scroll)).unwrap_or(0);

@@ -15,7 +15,7 @@ use crate::report::text;
 
 use super::model::{Cell, Model, Screen, Session, Stage};
 
-pub use lists::help_lines;
+pub(super) use lists::help_lines;
 
 /// Fewer cells than this and only the main figures are shown.
 const SMALL: (u16, u16) = (72, 20);
@@ -88,7 +88,7 @@ pub fn hit(model: &Model, column: u16, row: u16) -> Option<Hit> {
 }
 
 /// The answer of the screen as the command gives it.
-pub fn answer_text(session: &Session) -> Option<String> {
+pub(super) fn answer_text(session: &Session) -> Option<String> {
     let shown = session.shown.as_ref()?;
     match session.screen {
         Screen::Pool => Some(text::pool(&shown.on.context, &shown.on.pool)),
