@@ -1,1 +1,3 @@
 //! Pictures: pure drawing of plain data into a buffer; nothing here knows the model.
+
+pub mod column;
