@@ -2,5 +2,8 @@
 
 mod boxed;
 pub mod column;
+pub mod gauge;
+mod pen;
+pub mod trade;
 
 pub use boxed::boxed;

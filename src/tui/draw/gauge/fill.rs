@@ -1,0 +1,145 @@
+//! Gauges of a release and of its standings.
+
+use crate::mix::{Mix, Spread, TargetStanding};
+use crate::problem::harmless;
+use crate::site::Site;
+use crate::target::Target;
+use crate::tasks::rank::Shown;
+use crate::units::{Dimension, System};
+
+use super::{Attainable, Gauge, Held, Reading};
+
+/// A release with all that a gauge tells of it.
+#[derive(Debug, Clone, Copy)]
+pub struct Release<'a> {
+    /// Temperature, C.
+    pub temperature_c: f64,
+    /// Oxygen, mg/L.
+    pub oxygen_mg_l: Option<f64>,
+    /// The perturbed cases.
+    pub spread: &'a Spread,
+    /// Standing against every target valid on the date.
+    pub targets: &'a [TargetStanding],
+}
+
+impl<'a> From<&'a Mix> for Release<'a> {
+    fn from(mix: &'a Mix) -> Self {
+        let (temperature_c, oxygen_mg_l) = (mix.release.temperature_c, mix.release.oxygen_mg_l);
+        Self { temperature_c, oxygen_mg_l, spread: &mix.spread, targets: &mix.targets }
+    }
+}
+
+impl<'a> From<&'a Shown> for Release<'a> {
+    fn from(shown: &'a Shown) -> Self {
+        let (temperature_c, oxygen_mg_l) = (shown.temperature_c, shown.oxygen_mg_l);
+        Self { temperature_c, oxygen_mg_l, spread: &shown.spread, targets: &shown.targets }
+    }
+}
+
+impl Release<'_> {
+    fn temperature(self) -> Reading {
+        Reading { value: Some(self.temperature_c), band: self.spread.band_c().map(<[f64; 2]>::from) }
+    }
+
+    fn oxygen(self) -> Reading {
+        let band = self.spread.band_oxygen_mg_l().map(<[f64; 2]>::from);
+        Reading { value: self.oxygen_mg_l, band: self.oxygen_mg_l.and(band) }
+    }
+
+    /// Its targets that have a bound, the governing one first.
+    fn held(self, site: &Site, of: impl Fn(&TargetStanding, &Target) -> Option<Held>) -> Vec<Held> {
+        let mut held: Vec<Held> =
+            self.targets.iter().filter_map(|s| of(s, site.targets.get(s.target)?)).collect();
+        held.sort_by_key(|h| !h.governs);
+        held
+    }
+}
+
+/// What is said without a bound of a kind.
+fn no_target(release: Release, of_kind: &'static str) -> &'static str {
+    if release.targets.is_empty() { "no target on this date" } else { of_kind }
+}
+
+impl Gauge {
+    /// The gauge of the temperature; attainable in C.
+    pub fn temperature(
+        site: &Site,
+        system: System,
+        tried: Release,
+        now: Option<Release>,
+        attainable: Attainable,
+    ) -> Self {
+        let several = tried.targets.len() > 1;
+        let held = |s: &TargetStanding, rule: &Target| {
+            (rule.low_c.is_some() || rule.high_c.is_some()).then(|| Held {
+                name: harmless(&rule.name),
+                low: rule.low_c,
+                high: rule.high_c,
+                preferred: rule.preferred_c,
+                buffer: rule.buffer_c,
+                value: s.value_c,
+                statistic: rule.statistic.name().replace('_', " "),
+                standing: s.temperature.0,
+                by: s.temperature.1,
+                share: s.share_inside,
+                share_both: s.share_inside_both.filter(|_| rule.oxygen_min_mg_l.is_some()),
+                governs: several && s.governs,
+            })
+        };
+        Self {
+            title: "Temperature",
+            dimension: Dimension::Temperature,
+            system,
+            note: None,
+            targets: tried.held(site, held),
+            no_target: no_target(tried, "no target on this date bounds it"),
+            tried: tried.temperature(),
+            now: now.map(Release::temperature),
+            attainable,
+        }
+    }
+
+    /// The gauge of the oxygen; attainable in mg/L.
+    pub fn oxygen(
+        site: &Site,
+        system: System,
+        tried: Release,
+        now: Option<Release>,
+        attainable: Attainable,
+    ) -> Self {
+        let several = tried.targets.len() > 1;
+        let held = |s: &TargetStanding, rule: &Target| {
+            rule.oxygen_min_mg_l.map(|least| Held {
+                name: harmless(&rule.name),
+                low: Some(least),
+                high: None,
+                preferred: None,
+                buffer: 0.0,
+                value: s.oxygen_mg_l,
+                statistic: "day".to_owned(),
+                standing: s.oxygen.0,
+                by: s.oxygen.1,
+                share: s.oxygen_share_inside,
+                share_both: None,
+                governs: several && s.governs,
+            })
+        };
+        Self {
+            title: "Oxygen",
+            dimension: Dimension::Concentration,
+            system,
+            note: None,
+            targets: tried.held(site, held),
+            no_target: no_target(tried, "no target on this date bounds it"),
+            tried: tried.oxygen(),
+            now: now.map(Release::oxygen),
+            attainable,
+        }
+    }
+
+    /// The same with a word on what it holds for, such as `at 1,200 cfs`.
+    #[must_use]
+    pub fn noted(self, note: String) -> Self {
+        Self { note: Some(note), ..self }
+    }
+}

@@ -1,0 +1,34 @@
+//! The picture of a ranking.
+
+use crate::site::Site;
+use crate::tasks::rank::{RankAnswer, Shown};
+use crate::units::System;
+
+use super::{TradePicture, TradePoint};
+
+impl TradePicture {
+    /// The trade of a ranking. Its ranges are those left when every target valid on the date is to be kept.
+    pub fn of(site: &Site, system: System, answer: &RankAnswer, selected: Option<usize>) -> Self {
+        let point =
+            |shown: &Shown| TradePoint { temperature_c: shown.temperature_c, oxygen_mg_l: shown.oxygen_mg_l };
+        let unbeaten = answer.trade.iter();
+        let unbeaten = unbeaten
+            .map(|t| TradePoint { temperature_c: t.temperature_c, oxygen_mg_l: t.oxygen_mg_l })
+            .collect();
+        // every shown mix is held against the same targets: those valid on the date
+        let held = answer.mixes.first().or(answer.now.as_ref()).map_or(&[][..], |shown| &shown.targets);
+        let rules = || held.iter().filter_map(|s| site.targets.get(s.target));
+        Self {
+            system,
+            mixes: answer.mixes.iter().map(point).collect(),
+            unbeaten,
+            now: answer.now.as_ref().map(point),
+            selected,
+            low_c: rules().filter_map(crate::target::Target::low_kept_c).reduce(f64::max),
+            high_c: rules().filter_map(crate::target::Target::high_kept_c).reduce(f64::min),
+            preferred_c: rules().find_map(|t| t.preferred_c),
+            floor_mg_l: rules().filter_map(|t| t.oxygen_min_mg_l).reduce(f64::max),
+            of_day: answer.blocks.len() > 1,
+        }
+    }
+}
