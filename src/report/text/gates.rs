@@ -89,12 +89,12 @@ pub fn instruction(context: &Context, part: &ShownPart) -> String {
 }
 
 /// Which gates move, from where to where, and from which day the crew can.
-pub fn moves(context: &Context, change: &Change) -> String {
+pub fn moves(context: &Context, change: &Change, system: System) -> String {
     let stand = |o: &Outlet, open: f64, flow_m3s: f64| {
         if open <= 0.0 {
             "shut".to_owned()
         } else if o.positions.is_empty() {
-            flow(flow_m3s, context.system)
+            flow(flow_m3s, system)
         } else {
             opening(o, open)
         }

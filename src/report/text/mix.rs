@@ -32,7 +32,7 @@ pub(super) fn body(context: &Context, answer: &MixAnswer) -> String {
         out.push_str(&against_now(site, now, mix, &answer.mix, system));
         if let Some(change) = &answer.change {
             let crew = format!("{:.1} crew hours", change.moves.crew_hours);
-            out.push_str(&labelled("Change", &format!("{}; {crew}", moves(context, change))));
+            out.push_str(&labelled("Change", &format!("{}; {crew}", moves(context, change, context.system))));
         }
     }
     out.push_str(&labelled("", "leaving the pool; brackets hold 10-90 % of our perturbed cases"));

@@ -6,12 +6,16 @@ mod lists;
 mod mix;
 mod pool;
 mod rank;
+mod water;
 mod write;
 
 use ratatui::buffer::Buffer;
 use ratatui::layout::{Position, Rect};
 
+use crate::problem::harmless;
 use crate::report::text;
+use crate::tasks::Failure;
+use crate::units::System;
 
 use super::model::{Cell, Model, Screen, Session, Stage};
 
@@ -84,6 +88,17 @@ pub fn hit(model: &Model, column: u16, row: u16) -> Option<Hit> {
             Screen::Rank => rank::hit(model, session, parts.body, at),
         },
         Stage::Opening | Stage::Broken { .. } => None,
+    }
+}
+
+/// Why there is no answer, in one sentence.
+fn failure_words(failure: &Failure, system: System) -> String {
+    match failure {
+        Failure::Usage(words) => harmless(words),
+        Failure::Refused(problems, _) => {
+            problems.iter().map(|p| p.advice(system)).collect::<Vec<_>>().join("; ")
+        }
+        Failure::Stopped => "stopped".to_owned(),
     }
 }
 

@@ -25,7 +25,7 @@ pub(super) fn best(context: &Context, best: &Shown) -> String {
     }
     // that no gate moves is among the reasons
     let change = best.change.as_ref().filter(|c| !c.moved.is_empty());
-    set.extend(change.map(|change| moves(context, change)));
+    set.extend(change.map(|change| moves(context, change, context.system)));
     let mut why: Vec<String> = best.reasons.iter().map(|r| harmless(&in_system(r, system))).collect();
     if let Some(lost) = best.generation_lost_mw.filter(|mw| *mw > 0.0) {
         why.push(format!("{lost:.1} MW not made"));

@@ -1,0 +1,179 @@
+//! The mix screen.
+//!
+//! ```text
+//! picture of the pool        | board: what is set now, what is tried, room
+//! with the zones, or two     | the cell chosen, its limits
+//! tries side by side         | difference, change, warnings, not checked
+//! ---------------------------+--------------------------------------------
+//! release against every target: temperature          oxygen
+//! ```
+
+mod board;
+mod compare;
+mod said;
+
+use ratatui::buffer::Buffer;
+use ratatui::layout::{Position, Rect};
+
+use crate::mix::Setting;
+use crate::tasks::MixAnswer;
+use crate::units::{Dimension, show};
+
+use super::super::draw::column::{Picture, column, gate_at};
+use super::super::draw::gauge::{Attainable, Gauge, Release, gauges, gauges_rows};
+use super::super::look::Role;
+use super::super::model::{Cell, Model, Row, Session, Shown};
+use super::water::{self, Stands};
+use super::write::put;
+use super::{Hit, failure_words};
+
+pub(super) use board::cell_words;
+
+/// Least rows of the picture and the board, whatever the gauges would like.
+const LEAST_ABOVE: u16 = 9;
+
+/// Where the parts lie.
+struct Parts {
+    picture: Rect,
+    board: Rect,
+    said: Rect,
+    gauges: Rect,
+}
+
+fn parts(model: &Model, session: &Session, area: Rect) -> Parts {
+    let wanted = gauge_pair(model, session).map_or(6, |g| gauges_rows([&g[0], &g[1]], area.width));
+    // low screens keep two thirds for the board: the gauges say less in fewer rows, the board would only scroll
+    let most = if area.height < 24 { area.height / 3 } else { area.height / 2 };
+    let below = wanted.min(area.height.saturating_sub(LEAST_ABOVE)).min(most);
+    let above = area.height - below;
+    let board_width = (area.width / 2).max(46).min(area.width);
+    let picture = Rect { width: area.width - board_width, height: above, ..area };
+    let right = Rect { x: area.x + picture.width, width: board_width, height: above, ..area };
+    let rows = u16::try_from(board::lines(session)).unwrap_or(u16::MAX);
+    // what is said gets at least four rows; where the board is longer than the rest it scrolls
+    let board_height = rows.min(above.saturating_sub(4));
+    Parts {
+        picture,
+        board: Rect { height: board_height, ..right },
+        said: Rect { y: right.y + board_height, height: above - board_height, ..right },
+        gauges: Rect { y: area.y + above, height: below, ..area },
+    }
+}
+
+/// Draws the mix screen.
+pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
+    let Some(shown) = &session.shown else {
+        let words = session
+            .wrong
+            .as_ref()
+            .map_or_else(|| "computing ...".into(), |f| failure_words(f, model.system()));
+        put(buf, area, 0, 0, &words, model.look.style(Role::Plain));
+        return;
+    };
+    let parts = parts(model, session, area);
+    board::draw(model, session, parts.board, buf);
+    said::draw(model, session, parts.said, buf);
+    match session.draft().beside {
+        Some(beside) => compare::draw(model, session, beside, parts.picture, buf),
+        None => column(&picture(model, session, shown), parts.picture, buf, model.look),
+    }
+    match gauge_pair(model, session) {
+        Some(pair) => gauges([&pair[0], &pair[1]], parts.gauges, buf, model.look),
+        None => no_release(model, session, parts.gauges, buf),
+    }
+}
+
+/// Why there is no release to hold against anything.
+fn no_release(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
+    let why = match session.answer(session.draft().at) {
+        Some(Err(failure)) => failure_words(failure, model.system()),
+        _ => "computing ...".to_owned(),
+    };
+    put(buf, area, 0, 0, "No release: this setting gives no answer", model.look.style(Role::Outside));
+    for (row, line) in (1..area.height).zip(super::write::wrapped(&why, usize::from(area.width), 2)) {
+        put(buf, area, 0, row, &line, model.look.style(Role::Plain));
+    }
+}
+
+/// What lies under a place.
+pub(super) fn hit(model: &Model, session: &Session, area: Rect, at: Position) -> Option<Hit> {
+    let parts = parts(model, session, area);
+    if parts.board.contains(at) {
+        return board::cell_at(model, session, parts.board, at).map(Hit::Cell);
+    }
+    let shown = session.shown.as_ref().filter(|_| session.draft().beside.is_none())?;
+    if !parts.picture.contains(at) {
+        return None;
+    }
+    let gate = gate_at(&picture(model, session, shown), parts.picture, at.x, at.y)?;
+    let cells = Row::Outlet(gate).cells(session.context().site());
+    cells.first().copied().map(Hit::Cell)
+}
+
+/// The setting on the board as it was computed, else as it is given.
+fn setting(session: &Session) -> Option<&Setting> {
+    session.tried().map(|answer| &answer.setting)
+}
+
+fn picture(model: &Model, session: &Session, shown: &Shown) -> Picture {
+    let context = &shown.on.context;
+    let (site, profile) = (context.site(), &context.profile);
+    let date = context.on.date_naive();
+    let chosen = match session.mix.cell {
+        Cell::Opening(i) | Cell::Flow(i) => Some(i),
+        _ => None,
+    };
+    let stands = |outlet: usize| {
+        let gate = setting(session).and_then(|s| s.gates.iter().find(|g| g.outlet == outlet));
+        Stands {
+            opening: gate.map_or(0.0, |g| g.opening),
+            flow_m3s: gate.map_or(0.0, |g| g.flow_m3s),
+            out: site.limits.outages.iter().any(|o| o.outlet == outlet && o.covers(date)),
+        }
+    };
+    let gates = (0..site.outlets.len())
+        .map(|i| water::gate(site, i, stands(i), profile.pool_m, chosen == Some(i), model.system()))
+        .collect();
+    let levels = session.tried().map_or(&[][..], |a| &a.mix.levels);
+    Picture {
+        gates,
+        zones: levels.iter().filter_map(|d| water::zone(site, profile, d)).collect(),
+        ..water::pool(site, profile, &shown.on.pool.layering, model.system())
+    }
+}
+
+/// The release tried against the targets, beside the one now.
+fn gauge_pair(model: &Model, session: &Session) -> Option<[Gauge; 2]> {
+    let answer: &MixAnswer = session.tried()?;
+    let context = session.context();
+    let (site, system) = (context.site(), model.system());
+    let now = answer.now.as_ref().map(|(_, mix)| Release::from(mix));
+    let tried = Release::from(&answer.mix);
+    let old = model.long.is_some() || session.rank_wrong.is_some();
+    let attainable = |range: fn(&crate::tasks::rank::RankAnswer) -> Option<[f64; 2]>| match &session.ranked {
+        None if model.long.is_some() => Attainable::Computing,
+        None => Attainable::NotAsked,
+        Some(ranked) => match range(&ranked.answer) {
+            Some(range) if old => Attainable::Before(range),
+            Some(range) => Attainable::Known(range),
+            None => Attainable::NotAsked,
+        },
+    };
+    let at = session.ranked.as_ref().and_then(|r| match r.answer.blocks[..] {
+        [(_, flow)] => Some(format!("attainable at {}", show(flow, Dimension::Flow, system, digits(model)))),
+        _ => None,
+    });
+    let noted = |gauge: Gauge| match &at {
+        Some(at) => gauge.noted(at.clone()),
+        None => gauge,
+    };
+    Some([
+        noted(Gauge::temperature(site, system, tried, now, attainable(|r| r.attainable_c))),
+        Gauge::oxygen(site, system, tried, now, attainable(|r| r.attainable_oxygen_mg_l)),
+    ])
+}
+
+/// Decimals of a flow.
+fn digits(model: &Model) -> u8 {
+    u8::from(model.system() == crate::units::System::Si)
+}

@@ -1,0 +1,90 @@
+//! What is said beside the board: the limits of what is chosen, the difference from now, what it takes, what to beware
+//! of, what is not checked.
+
+use ratatui::buffer::Buffer;
+use ratatui::layout::Rect;
+
+use crate::mix::limits::{Check, Of};
+use crate::problem::{Weight, harmless};
+use crate::report::{flags_of, text};
+use crate::tasks::MixAnswer;
+use crate::units::in_system;
+
+use super::super::super::look::Role;
+use super::super::super::model::{Cell, Model, Session};
+use super::super::failure_words;
+use super::super::write::{put, put_right, wrapped};
+
+/// Draws what is said.
+pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
+    let lines = lines(model, session, usize::from(area.width));
+    let last = lines.len().saturating_sub(usize::from(area.height));
+    let from = session.mix.scroll.min(last);
+    for (row, (line, role)) in (0..area.height).zip(lines.iter().skip(from)) {
+        put(buf, area, 0, row, line, model.look.style(*role));
+    }
+    if last > 0 && area.height > 0 {
+        let below = last - from;
+        let words = if below > 0 { format!(" {below} more, PgDn ") } else { " PgUp ".to_owned() };
+        put_right(buf, area, area.width, area.height - 1, &words, model.look.style(Role::Key));
+    }
+}
+
+/// Everything that is said, wrapped.
+fn lines(model: &Model, session: &Session, width: usize) -> Vec<(String, Role)> {
+    let system = model.system();
+    let mut out: Vec<(String, Role)> = Vec::new();
+    let mut say = |text: String, role: Role| {
+        let lines = wrapped(&text, width, 2);
+        out.extend(lines.into_iter().map(|l| (l, role)));
+    };
+    let answer = match session.answer(session.draft().at) {
+        Some(Ok(answer)) => answer,
+        Some(Err(failure)) => {
+            say(failure_words(failure, system), Role::Outside);
+            return out;
+        }
+        None => {
+            say("computing ...".into(), Role::Quiet);
+            return out;
+        }
+    };
+    let context = session.context();
+    let site = context.site();
+    if let Some((_, was)) = &answer.now {
+        say(format!("against now: {}", text::difference(was, &answer.mix, system)), Role::Strong);
+    } else {
+        say("the setting now".into(), Role::Strong);
+    }
+    if let Some(change) = &answer.change {
+        let hours = format!("{:.1} crew hours", change.moves.crew_hours);
+        say(format!("{}; {hours}", text::moves(context, change, system)), Role::Plain);
+    }
+    for check in chosen(answer, session.mix.cell) {
+        let (mark, role) = if check.broken() { ("!", Role::Outside) } else { (" ", Role::Plain) };
+        let words = harmless(&in_system(&check.words(site), system));
+        let cure = if check.broken() { format!("; {}", check.cure()) } else { String::new() };
+        say(format!("{mark} {words}{cure}"), role);
+    }
+    for problem in flags_of(&answer.mix.warnings) {
+        let (mark, role) =
+            if problem.weight == Weight::Note { ("-", Role::Plain) } else { ("!", Role::Warn) };
+        say(format!("{mark} {}", problem.advice(system)), role);
+    }
+    if answer.mix.not_checked.is_empty() {
+        say("every limit of the site file is checked".into(), Role::Plain);
+    } else {
+        say(format!("not checked: {}", harmless(&answer.mix.not_checked.join("; "))), Role::Plain);
+    }
+    out
+}
+
+/// Limits of what is chosen.
+fn chosen(answer: &MixAnswer, cell: Cell) -> Vec<&Check> {
+    let of = match cell {
+        Cell::Opening(i) | Cell::Flow(i) => Of::Outlet(i),
+        Cell::Total(i) => Of::Well(i),
+        _ => Of::Whole,
+    };
+    answer.mix.limits.iter().filter(|c| c.of == of).collect()
+}
