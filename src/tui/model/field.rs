@@ -43,12 +43,14 @@ pub struct Field {
     pub input: Input,
     /// What is wrong with that.
     pub wrong: Option<String>,
+    /// Whether it is as it was: the first letter typed takes its place.
+    pub untouched: bool,
 }
 
 impl Field {
     /// A field that holds some text.
     pub fn new(typed: Typed, text: String) -> Self {
-        Self { typed, input: Input::new(text), wrong: None }
+        Self { typed, input: Input::new(text), wrong: None, untouched: true }
     }
 
     /// What was typed, understood; a bare number is in the units shown.

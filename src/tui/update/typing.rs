@@ -1,6 +1,6 @@
 //! Typing: checked at every key.
 
-use crossterm::event::{Event as TermEvent, KeyEvent, KeyEventKind};
+use crossterm::event::{Event as TermEvent, KeyCode, KeyEvent, KeyEventKind};
 use tui_input::backend::crossterm::EventHandler as _;
 
 use super::super::keys::{Action, Place, action};
@@ -21,6 +21,11 @@ pub(super) fn key(model: &mut Model, key: &KeyEvent) -> Vec<Effect> {
         None => {
             if key.kind != KeyEventKind::Release {
                 edited(model, |field| {
+                    let letter = matches!(key.code, KeyCode::Char(_));
+                    if letter && field.untouched {
+                        field.input.reset();
+                    }
+                    field.untouched = false;
                     field.input.handle_event(&TermEvent::Key(*key));
                 });
             }
@@ -33,6 +38,10 @@ pub(super) fn key(model: &mut Model, key: &KeyEvent) -> Vec<Effect> {
 pub(super) fn pasted(model: &mut Model, text: &str) -> Vec<Effect> {
     let line: String = text.lines().next().unwrap_or("").chars().filter(|c| !c.is_control()).collect();
     edited(model, |field| {
+        if field.untouched {
+            field.input.reset();
+        }
+        field.untouched = false;
         for c in line.chars() {
             field.input.handle(tui_input::InputRequest::InsertChar(c));
         }

@@ -27,6 +27,9 @@ use super::write::{cut, put, put_right};
 /// Work shorter than this is not spoken of, milliseconds (choice: what still feels at once).
 const AT_ONCE_MS: i64 = 200;
 
+/// From so many columns on everything is said in full.
+const WIDE: u16 = 100;
+
 /// Parts of the screen.
 #[derive(Debug, Clone, Copy)]
 pub(super) struct Parts {
@@ -116,8 +119,10 @@ fn head(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
         System::Si => "units: SI",
     };
     put_right(buf, area, area.width, 0, units, look.style(Role::Quiet));
+    let wide = area.width >= WIDE;
     let mark = match (site.demonstration, context.folder.in_memory()) {
-        (true, true) => "  [demonstration data, held in memory]",
+        (true, true) if wide => "  [demonstration data, held in memory]",
+        (true, true) => "  [demonstration, in memory]",
         (true, false) => "  [demonstration data]",
         (false, _) => "",
     };
@@ -125,19 +130,20 @@ fn head(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
     let column = put(buf, area, 0, 0, &cut(&harmless(&site.name), room), look.style(Role::Strong));
     put(buf, area, column, 0, mark, look.style(Role::Warn));
     let mut column = 0;
-    for (words, role) in facts(session, context, model.system()) {
+    for (words, role) in facts(session, context, model.system(), wide) {
         column = put(buf, area, column, 1, &words, look.style(role)) + 1;
     }
 }
 
 /// Pool, cast, age, badge, date: in words with the role of each.
-fn facts(session: &Session, context: &Context, system: System) -> Vec<(String, Role)> {
+fn facts(session: &Session, context: &Context, system: System, wide: bool) -> Vec<(String, Role)> {
     let site = context.site();
+    let hour = if wide { "%Y-%m-%d %H:%M" } else { "%Y-%m-%d" };
     let pool = show(context.profile.pool_m, Dimension::Length, system, 1);
     let badge = Freshness::of(site, context.age_days);
     let taken = context.profile.taken.map_or_else(
         || "cast at an unknown time".to_owned(),
-        |t| format!("cast {}", t.with_timezone(&site.offset).format("%Y-%m-%d %H:%M")),
+        |t| format!("cast {}", t.with_timezone(&site.offset).format(hour)),
     );
     let age = context.age_days.map_or_else(String::new, |d| format!(", {d:.0} days old"));
     let badge = match badge {
@@ -186,12 +192,12 @@ fn tabs(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
 /// What is being computed, or why the newest question has no answer.
 fn status(model: &Model, session: &Session) -> (String, Role) {
     let long = |under: &&Under| (model.clock - under.since).num_milliseconds() >= AT_ONCE_MS;
-    if let Some(under) = model.long.as_ref().filter(long) {
-        let words = format!("ranking {:.0} %, the list is from before; Esc stops", 100.0 * under.done);
-        return (words, Role::Warn);
-    }
     if model.quick.as_ref().is_some_and(|u| long(&u)) {
         return ("computing; what is shown is from before".into(), Role::Warn);
+    }
+    if let Some(under) = model.long.as_ref().filter(long) {
+        let before = if session.ranked.is_some() { "; what is shown is from before" } else { "" };
+        return (format!("ranking {:.0} %{before}, Esc stops", 100.0 * under.done), Role::Warn);
     }
     if session.wrong.is_some() {
         return ("! no answer to the last change; what is shown is from before".into(), Role::Outside);

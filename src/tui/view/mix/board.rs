@@ -149,7 +149,11 @@ impl Board<'_> {
         put(buf, area, place.0, line, &padded, look.style(if chosen { Role::Chosen } else { Role::Tried }));
     }
 
+    /// A flow; dots while the wells have not shared it out yet.
     fn flow(&self, m3s: f64) -> String {
+        if m3s.is_infinite() {
+            return "...".into();
+        }
         figure(m3s, self.model.system().unit(Dimension::Flow), digits(self.model))
     }
 
@@ -190,7 +194,7 @@ impl Board<'_> {
         let gate = match (by_flow, by_opening) {
             (Some(f), _) => Some(Gate { outlet: i, opening: f.opening.unwrap_or(1.0), flow_m3s: f.flow_m3s }),
             (None, Some(opening)) if opening > 0.0 => {
-                Some(Gate { outlet: i, opening, flow_m3s: shared.map_or(0.0, |g| g.flow_m3s) })
+                Some(Gate { outlet: i, opening, flow_m3s: shared.map_or(f64::INFINITY, |g| g.flow_m3s) })
             }
             _ => shared.filter(|_| crate::intake::spills_by_itself(o)),
         };

@@ -23,7 +23,7 @@ pub(super) fn draw(model: &Model, session: &Session, beside: usize, area: Rect, 
     let system = model.system();
     let at = session.draft().at;
     // what each figure is stands in the first quarter
-    let name = (inside.width / 4).clamp(7, 12);
+    let name = (inside.width / 4).clamp(8, 12);
     let half = inside.width.saturating_sub(name) / 2;
     let places = [name, name + half];
     let answers = [at, beside].map(|i| session.answer(i));
@@ -54,8 +54,10 @@ pub(super) fn draw(model: &Model, session: &Session, beside: usize, area: Rect, 
         })
     };
     let site = session.context().site();
-    line("water", each(&|a| release(a, system, true)), buf);
-    line("oxygen", each(&|a| release(a, system, false)), buf);
+    line("water", each(&|a| release(a, system, true)[0].clone()), buf);
+    line("", each(&|a| release(a, system, true)[1].clone()), buf);
+    line("oxygen", each(&|a| release(a, system, false)[0].clone()), buf);
+    line("", each(&|a| release(a, system, false)[1].clone()), buf);
     line("total", each(&|a| show(a.mix.release.flow_m3s, Dimension::Flow, system, digits(model))), buf);
     line(
         "stands",
@@ -73,7 +75,7 @@ pub(super) fn draw(model: &Model, session: &Session, beside: usize, area: Rect, 
         buf,
     );
     line(
-        "cases in",
+        "cases",
         each(&|a| {
             let share =
                 a.mix.targets.iter().find(|s| s.governs).and_then(|s| s.share_inside_both.or(s.share_inside));
@@ -107,22 +109,21 @@ pub(super) fn draw(model: &Model, session: &Session, beside: usize, area: Rect, 
     line("set", each(&|a| text::setting_words(site, &a.setting, system)), buf);
 }
 
-/// The release with its band.
-fn release(answer: &MixAnswer, system: System, warm: bool) -> String {
+/// The release and its band.
+fn release(answer: &MixAnswer, system: System, warm: bool) -> [String; 2] {
     let mix = &answer.mix;
     let unit = system.unit(Dimension::Temperature);
     let band = |band: Option<(f64, f64)>, of: &dyn Fn(f64) -> String| {
-        band.map_or_else(String::new, |(low, high)| format!(" ({} to {})", of(low), of(high)))
+        band.map_or_else(String::new, |(low, high)| format!("{}-{}", of(low), of(high)))
     };
     if warm {
         let value = show(mix.release.temperature_c, Dimension::Temperature, system, 1);
-        value + &band(mix.spread.band_c(), &|c| figure(c, unit, 1))
-    } else {
-        match mix.release.oxygen_mg_l {
-            None => "unknown".into(),
-            Some(oxygen) => {
-                format!("{oxygen:.1} mg/L{}", band(mix.spread.band_oxygen_mg_l(), &|o| format!("{o:.1}")))
-            }
+        return [value, band(mix.spread.band_c(), &|c| figure(c, unit, 1))];
+    }
+    match mix.release.oxygen_mg_l {
+        None => ["unknown".into(), String::new()],
+        Some(oxygen) => {
+            [format!("{oxygen:.1} mg/L"), band(mix.spread.band_oxygen_mg_l(), &|o| format!("{o:.1}"))]
         }
     }
 }
