@@ -16,6 +16,7 @@ use crate::profile::Profile;
 use crate::site::Site;
 use crate::units::{Dimension, System};
 
+mod casts;
 mod change;
 mod day;
 mod mix;
@@ -24,6 +25,7 @@ pub mod rank;
 mod setting;
 mod words;
 
+pub use casts::{Cast, casts};
 pub use change::{Change, Move};
 pub use day::{BlockAnswer, DayAnswer};
 pub use mix::{MixAnswer, mix};
@@ -120,6 +122,20 @@ impl Context {
     pub fn site(&self) -> &Site {
         &self.folder.site
     }
+
+    /// A site with a cast of it and a decision date.
+    fn of(
+        folder: Folder,
+        read: folder::Read,
+        (on, on_from): (DateTime<FixedOffset>, OnFrom),
+        system: System,
+    ) -> Self {
+        let folder::Read { mut profile, source } = read;
+        let age_days = profile.age_days(on);
+        age_flags(&folder.site, &mut profile, age_days);
+        let fingerprint = folder.fingerprint(&[&source]);
+        Self { folder, profile, on, on_from, age_days, fingerprint, system, source }
+    }
 }
 
 /// Opens what a task works on. `clock` is the time of day of the machine.
@@ -152,12 +168,8 @@ pub fn open(asked: &Asked, clock: DateTime<Utc>) -> Result<Context, Failure> {
         None => folder.newest(pool_m),
     }
     .map_err(|problems| Failure::Refused(problems, system))?;
-    let mut profile = read.profile;
-    let (on, on_from) = decision_date(asked, &folder, clock)?;
-    let age_days = profile.age_days(on);
-    age_flags(site, &mut profile, age_days);
-    let fingerprint = folder.fingerprint(&[&read.source]);
-    Ok(Context { folder, profile, on, on_from, age_days, fingerprint, system, source: read.source })
+    let on = decision_date(asked, &folder, clock)?;
+    Ok(Context::of(folder, read, on, system))
 }
 
 fn open_folder(asked: &Asked) -> Result<Folder, Failure> {
