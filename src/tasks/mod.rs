@@ -23,14 +23,16 @@ mod mix;
 mod pool;
 pub mod rank;
 mod setting;
+mod since;
 mod words;
 
 pub use casts::{Cast, casts};
 pub use change::{Change, Move};
 pub use day::{BlockAnswer, DayAnswer};
 pub use mix::{MixAnswer, mix};
-pub use pool::{ColdWater, OutletState, PoolAnswer, pool};
+pub use pool::{ColdWater, OutletState, PoolAnswer, cold_water, pool};
 pub use setting::{Understood, now_setting, setting};
+pub use since::{ColdChange, Since};
 pub use words::Word;
 
 /// Why a task gave no answer.

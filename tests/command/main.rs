@@ -14,6 +14,7 @@ mod new;
 mod rank;
 mod rank_answers;
 mod refused;
+mod since;
 mod stories;
 mod units;
 mod wells;
