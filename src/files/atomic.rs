@@ -39,7 +39,7 @@ pub fn write(path: &Path, bytes: &[u8]) -> Result<(), Problem> {
     replace(&target, bytes, kept).map_err(|e| failed(&e)).map_err(named)
 }
 
-/// Writes `bytes` to `path` as [`write`] does, but only where nothing has that name, not even a broken link.
+/// Writes `bytes` to `path` as [`write()`] does, but only where nothing has that name, not even a broken link.
 ///
 /// # Errors
 /// `exists` where something has, `cannot-write` otherwise; nothing is left behind.
