@@ -21,7 +21,7 @@ const MOST_LINKS: usize = 40;
 /// behind.
 pub fn write(path: &Path, bytes: &[u8]) -> Result<(), Problem> {
     let named = |problem: Problem| problem.in_file(path.display().to_string());
-    let target = follow(path).map_err(failed).map_err(named)?;
+    let target = follow(path).map_err(|e| failed(&e)).map_err(named)?;
     let kept = match fs::metadata(&target) {
         Ok(about) if !about.is_file() => {
             let words = "cannot be written: this is a folder, a pipe or a device";
@@ -34,12 +34,12 @@ pub fn write(path: &Path, bytes: &[u8]) -> Result<(), Problem> {
         }
         Ok(about) => Some(about.permissions()),
         Err(error) if error.kind() == io::ErrorKind::NotFound => None,
-        Err(error) => return Err(named(failed(error))),
+        Err(error) => return Err(named(failed(&error))),
     };
-    replace(&target, bytes, kept).map_err(failed).map_err(named)
+    replace(&target, bytes, kept).map_err(|e| failed(&e)).map_err(named)
 }
 
-/// Writes `bytes` to `path` as [`write`] does, but only where nothing has that name, not even a broken link.
+/// Writes `bytes` to `path` as [`write()`] does, but only where nothing has that name, not even a broken link.
 ///
 /// # Errors
 /// `exists` where something has, `cannot-write` otherwise; nothing is left behind.
@@ -53,7 +53,7 @@ pub fn create(path: &Path, bytes: &[u8]) -> Result<(), Problem> {
         let problem = if error.kind() == io::ErrorKind::AlreadyExists {
             Problem::refused("exists", "a file of this name is there; it was left alone", "name another")
         } else {
-            failed(error)
+            failed(&error)
         };
         problem.in_file(path.display().to_string())
     })
@@ -70,7 +70,7 @@ pub fn folder(path: &Path) -> Result<(), Problem> {
     })
 }
 
-fn failed(error: io::Error) -> Problem {
+fn failed(error: &io::Error) -> Problem {
     let cure = "check that the folder exists, has room and may be written to";
     Problem::refused("cannot-write", format!("cannot be written: {error}"), cure)
 }

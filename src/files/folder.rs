@@ -3,7 +3,6 @@
 use std::path::{Path, PathBuf};
 
 use chrono::{DateTime, FixedOffset};
-use include_dir::{Dir, include_dir};
 use sha2::{Digest, Sha256};
 
 use crate::problem::Problem;
@@ -14,34 +13,16 @@ use crate::units::System;
 use super::cast::{Told, cast};
 use super::text::{self, Format, Source};
 use super::yaml::Document;
+use inside::inside;
 
 mod found;
+mod inside;
 
 pub use found::{Found, sites_in, stamps};
+pub use inside::{demonstration_files, demonstrations};
 
 /// The file that makes a folder a site.
 const SITE_FILE: &str = "site.yaml";
-
-static DEMONSTRATIONS: Dir<'static> = include_dir!("$CARGO_MANIFEST_DIR/sites");
-
-/// The demonstration sites that travel inside the binary, by name; the first one opens when nothing is named.
-pub fn demonstrations() -> Vec<&'static str> {
-    let mut names: Vec<&str> = DEMONSTRATIONS.dirs().filter_map(|d| d.path().file_name()?.to_str()).collect();
-    names.sort_unstable();
-    names
-}
-
-/// Every file of the demonstration sites, path below the sites folder and bytes, in order.
-pub fn demonstration_files() -> Vec<(PathBuf, &'static [u8])> {
-    fn gather(dir: &Dir<'static>, out: &mut Vec<(PathBuf, &'static [u8])>) {
-        out.extend(dir.files().map(|f| (f.path().to_owned(), f.contents())));
-        dir.dirs().for_each(|d| gather(d, out));
-    }
-    let mut out = Vec::new();
-    gather(&DEMONSTRATIONS, &mut out);
-    out.sort();
-    out
-}
 
 /// Where a site's files are.
 #[derive(Debug, Clone)]
@@ -292,6 +273,20 @@ impl Folder {
         self.held(raw, source, problems, pool_m, Vec::new())
     }
 
+    /// Reads one cast of the folder under its own pool, by its file as listed or the last part of it.
+    ///
+    /// # Errors
+    /// Every problem of it, or that there is none.
+    pub fn own_cast(&self, file: &str) -> Result<Read, Vec<Problem>> {
+        let own = self.cast_sources().into_iter().find(|(name, _)| name == file || base(name) == file);
+        let (name, source) = own.ok_or_else(|| {
+            vec![Problem::refused("missing-file", "there is no such cast in `profiles`", "").in_file(file)]
+        })?;
+        let source = source.map_err(|p| vec![p])?;
+        let (raw, problems) = cast(&source, &self.site, &self.told(&name));
+        self.held(raw, source, problems, None, Vec::new())
+    }
+
     /// Holds a raw cast against the site and moves it to the pool asked for.
     fn held(
         &self,
@@ -320,8 +315,11 @@ impl Folder {
     pub fn profile_of(&self, listed: &Listed) -> (Option<Profile>, Vec<Problem>) {
         let mut problems = listed.problems.clone();
         let Some(raw) = &listed.raw else { return (None, problems) };
-        let (profile, found) = Profile::build(raw, &self.site, None);
+        let (mut profile, found) = Profile::build(raw, &self.site, None);
         problems.extend(found);
+        if let Some(profile) = &mut profile {
+            profile.flags.clone_from(&problems);
+        }
         (profile, problems)
     }
 
@@ -362,12 +360,6 @@ fn base(name: &str) -> &str {
 
 fn is_csv(path: &Path) -> bool {
     path.extension().is_some_and(|e| e.eq_ignore_ascii_case("csv"))
-}
-
-fn inside(file: &str) -> Option<Result<Source, Problem>> {
-    let contents = DEMONSTRATIONS.get_file(file)?.contents();
-    let format = if is_csv(Path::new(file)) { Format::Csv } else { Format::Yaml };
-    Some(text::read_from(file, contents, format))
 }
 
 /// Every problem of a site folder: the site file, then each cast; and the units its user reads.

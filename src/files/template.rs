@@ -32,7 +32,9 @@ pub fn write(folder: &Path, system: System) -> Result<Vec<PathBuf>, Problem> {
         let made = path.parent().map_or(Ok(()), atomic::folder);
         if let Err(problem) = made.and_then(|()| atomic::create(path, text.as_bytes())) {
             // they are our own: `create` takes no name that was there
-            written.iter().for_each(|path| _ = fs::remove_file(path));
+            for path in written {
+                _ = fs::remove_file(path);
+            }
             return Err(problem);
         }
         written.push(path.clone());

@@ -16,6 +16,7 @@ use crate::profile::Profile;
 use crate::site::Site;
 use crate::units::{Dimension, System};
 
+mod casts;
 mod change;
 mod changed;
 mod day;
@@ -23,16 +24,23 @@ mod mix;
 mod pool;
 pub mod rank;
 mod setting;
+mod since;
 mod solve;
 mod words;
 
+pub use casts::{Cast, casts};
 pub use change::{Change, Move};
 pub use changed::Changed;
 pub use day::{BlockAnswer, DayAnswer};
+pub use mix::{MixAnswer, mix};
 pub use mix::{MixAnswer, mix, mix_given};
+pub use pool::{ColdWater, OutletState, PoolAnswer, cold_water, pool};
 pub use pool::{ColdWater, OutletState, PoolAnswer, pool};
 pub use setting::{Understood, given, now_setting, setting};
+pub use setting::{Understood, now_setting, setting};
+pub use since::{ColdChange, Since};
 pub use solve::{Solved, preferred_c, solve};
+pub use words::Word;
 pub use words::{ByFlow, Given, Word};
 
 /// Why a task gave no answer.
@@ -124,6 +132,20 @@ impl Context {
     pub fn site(&self) -> &Site {
         &self.folder.site
     }
+
+    /// A site with a cast of it and a decision date.
+    fn of(
+        folder: Folder,
+        read: folder::Read,
+        (on, on_from): (DateTime<FixedOffset>, OnFrom),
+        system: System,
+    ) -> Self {
+        let folder::Read { mut profile, source } = read;
+        let age_days = profile.age_days(on);
+        age_flags(&folder.site, &mut profile, age_days);
+        let fingerprint = folder.fingerprint(&[&source]);
+        Self { folder, profile, on, on_from, age_days, fingerprint, system, source }
+    }
 }
 
 /// Opens what a task works on. `clock` is the time of day of the machine.
@@ -156,12 +178,8 @@ pub fn open(asked: &Asked, clock: DateTime<Utc>) -> Result<Context, Failure> {
         None => folder.newest(pool_m),
     }
     .map_err(|problems| Failure::Refused(problems, system))?;
-    let mut profile = read.profile;
-    let (on, on_from) = decision_date(asked, &folder, clock)?;
-    let age_days = profile.age_days(on);
-    age_flags(site, &mut profile, age_days);
-    let fingerprint = folder.fingerprint(&[&read.source]);
-    Ok(Context { folder, profile, on, on_from, age_days, fingerprint, system, source: read.source })
+    let on = decision_date(asked, &folder, clock)?;
+    Ok(Context::of(folder, read, on, system))
 }
 
 fn open_folder(asked: &Asked) -> Result<Folder, Failure> {

@@ -2,16 +2,15 @@
 //!
 //! Methods: `docs/methods.md`, section 2.
 
-use crate::files::folder::Listed;
 use crate::files::text::Source;
 use crate::intake;
 use crate::problem::Problem;
 use crate::profile::{Layering, Profile, colder_m3};
-use crate::site::{Kind, Site};
-use crate::water::{CP_REF_J_KG_K, RHO_REF_KG_M3};
+use crate::site::{Kind, Outlet, Site};
 use crate::withdrawal::{CrestForm, Opening, Sink, zone};
 
 use super::Context;
+use super::since::{Since, heat_change, previous, since};
 
 /// Volume colder than a threshold.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -48,6 +47,8 @@ pub struct PoolAnswer {
     pub reach_m: Option<f64>,
     /// Outlets from the highest down.
     pub outlets: Vec<OutletState>,
+    /// What the water did since the sound cast before; `None` where there is none.
+    pub since: Option<Since>,
     /// Flags against the cast before this one.
     pub against_previous: Vec<Problem>,
     /// Fingerprint of the inputs, the cast before this one included.
@@ -57,43 +58,66 @@ pub struct PoolAnswer {
 /// Is this profile sound, how is the water layered.
 pub fn pool(context: &Context) -> PoolAnswer {
     let site = context.site();
-    let profile = &context.profile;
-    let layering = Layering::of(profile, &site.pool);
-    let mut outlets: Vec<OutletState> = site
-        .outlets
-        .iter()
-        .enumerate()
-        .map(|(outlet, o)| {
-            let submergence_m = intake::submergence_m(o, 1.0, profile.pool_m);
-            OutletState {
-                outlet,
-                submergence_m,
-                wet: intake::is_wet(o, 1.0, profile.pool_m),
-                kept: o.min_submergence_m.map(|least| submergence_m >= least),
-            }
-        })
-        .collect();
+    let layering = Layering::of(&context.profile, &site.pool);
+    let water = Water::of(site, &context.profile);
+    let cold: Vec<ColdWater> = site.cold_water_c.iter().map(|&c| water.colder(c)).collect();
+    let earlier = previous(context);
+    let since = earlier.as_ref().and_then(|e| since(context, &e.0, (&layering, &cold)));
+    let against_previous = since.as_ref().and_then(|s| heat_change(context, s)).into_iter().collect();
+    let sources: Vec<&Source> = [&context.source].into_iter().chain(earlier.as_ref().map(|e| &e.1)).collect();
+    let fingerprint = context.folder.fingerprint(&sources);
+    let Water { reach_m, outlets, .. } = water;
+    PoolAnswer { layering, cold, reach_m, outlets, since, against_previous, fingerprint }
+}
+
+/// The water of an answer that is colder than a threshold, C, whether the site names it or not.
+pub fn cold_water(context: &Context, answer: &PoolAnswer, threshold_c: f64) -> ColdWater {
+    colder(context.site(), &context.profile, answer.reach_m, threshold_c)
+}
+
+/// A profile with the outlets under its pool.
+pub(super) struct Water<'a> {
+    site: &'a Site,
+    profile: &'a Profile,
+    outlets: Vec<OutletState>,
+    reach_m: Option<f64>,
+}
+
+impl<'a> Water<'a> {
+    pub(super) fn of(site: &'a Site, profile: &'a Profile) -> Self {
+        let outlets = outlets(site, profile.pool_m);
+        let reach_m = reach_m(site, profile, &outlets);
+        Self { site, profile, outlets, reach_m }
+    }
+
+    pub(super) fn colder(&self, threshold_c: f64) -> ColdWater {
+        colder(self.site, self.profile, self.reach_m, threshold_c)
+    }
+}
+
+fn colder(site: &Site, profile: &Profile, reach_m: Option<f64>, threshold_c: f64) -> ColdWater {
+    let above = |from: f64| colder_m3(&profile.column, &site.pool, threshold_c, from, profile.pool_m);
+    ColdWater { threshold_c, total_m3: above(site.pool.bed_m), usable_m3: reach_m.map(above) }
+}
+
+/// The outlets under a pool, from the highest down.
+fn outlets(site: &Site, pool_m: f64) -> Vec<OutletState> {
+    let state = |(outlet, o): (usize, &Outlet)| {
+        let submergence_m = intake::submergence_m(o, 1.0, pool_m);
+        OutletState {
+            outlet,
+            submergence_m,
+            wet: intake::is_wet(o, 1.0, pool_m),
+            kept: o.min_submergence_m.map(|least| submergence_m >= least),
+        }
+    };
+    let mut outlets: Vec<OutletState> = site.outlets.iter().enumerate().map(state).collect();
     let place = |s: &OutletState| (site.outlets[s.outlet].centre_m, &site.outlets[s.outlet].name);
     outlets.sort_by(|a, b| {
         let (a, b) = (place(a), place(b));
         b.0.total_cmp(&a.0).then_with(|| a.1.cmp(b.1))
     });
-    let reach_m = reach_m(site, profile, &outlets);
-    let cold = site
-        .cold_water_c
-        .iter()
-        .map(|&threshold_c| {
-            let colder =
-                |from: f64| colder_m3(&profile.column, &site.pool, threshold_c, from, profile.pool_m);
-            ColdWater { threshold_c, total_m3: colder(site.pool.bed_m), usable_m3: reach_m.map(colder) }
-        })
-        .collect();
-    let earlier = previous(context);
-    let against_previous =
-        earlier.as_ref().and_then(|e| heat_change(context, &layering, &e.0)).into_iter().collect();
-    let sources: Vec<&Source> = [&context.source].into_iter().chain(earlier.as_ref().map(|e| &e.1)).collect();
-    let fingerprint = context.folder.fingerprint(&sources);
-    PoolAnswer { layering, cold, reach_m, outlets, against_previous, fingerprint }
+    outlets
 }
 
 /// Lowest limit of the deepest usable outlet at the least release of the site, m; its centre-line where the site
@@ -112,31 +136,4 @@ fn reach_m(site: &Site, profile: &Profile, outlets: &[OutletState]) -> Option<f6
         },
     };
     Some(zone(&profile.column, &sink, 1.0).map_or(sink.centre_m, |z| z.lower.limit_m))
-}
-
-/// The last sound cast before the one in hand, and its bytes.
-fn previous(context: &Context) -> Option<(Profile, Source)> {
-    let taken = context.profile.taken?;
-    let casts = context.folder.casts();
-    let before = |l: &&Listed| l.raw.as_ref().and_then(|r| r.taken).is_some_and(|t| t < taken);
-    let last = casts.iter().rev().find(before)?;
-    Some((context.folder.profile_of(last).0?, last.source.clone()?))
-}
-
-/// Heat gained or lost since an earlier cast, where it is more than weather brings.
-fn heat_change(context: &Context, layering: &Layering, earlier: &Profile) -> Option<Problem> {
-    let site = context.site();
-    let days = earlier.age_days(context.profile.taken?).filter(|d| *d > 0.5)?;
-    let old = Layering::of(earlier, &site.pool);
-    // the common volume gains this much per area: volumes themselves come and go with the river
-    let depth_m = layering.volume_m3 / site.pool.area_m2(context.profile.pool_m);
-    let flux = RHO_REF_KG_M3 * CP_REF_J_KG_K * depth_m * (layering.mean_c - old.mean_c) / (days * 86_400.0);
-    (flux.abs() > site.checks.heat_w_m2).then(|| {
-        let words = format!(
-            "the water changed by {flux:+.0} W/m2 over {days:.0} days since {}: more than weather brings ({:.0})",
-            earlier.file, site.checks.heat_w_m2
-        );
-        let cure = "one of the two casts may be wrong, or the river exchanged the pool";
-        Problem::flag("heat-change", words, cure).in_file(&context.profile.file)
-    })
 }

@@ -2,7 +2,7 @@ use std::fs::{self, File};
 use std::os::unix::fs::{PermissionsExt, symlink};
 use std::path::Path;
 
-use gatemix::files::atomic::write;
+use gatemix::files::atomic::{create, write};
 
 fn mode(path: &Path) -> u32 {
     fs::metadata(path).unwrap().permissions().mode() & 0o777
@@ -81,4 +81,21 @@ fn scenario_a_failure_leaves_everything_as_it_was() {
     assert_eq!(fs::read(at("protected")).unwrap(), b"kept");
     assert_eq!(fs::read(at("plain")).unwrap(), b"kept");
     assert_eq!(names(folder.path()), ["plain", "protected", "ring"]);
+}
+
+#[test]
+fn scenario_a_name_that_is_taken_is_not_written_to() {
+    let folder = tempfile::tempdir().unwrap();
+    let at = |name: &str| folder.path().join(name);
+    create(&at("new"), b"first").unwrap();
+    File::create(at("plain")).unwrap();
+    assert_eq!((fs::read(at("new")).unwrap(), mode(&at("new"))), (b"first".to_vec(), mode(&at("plain"))));
+    symlink("nowhere", at("dangling")).unwrap();
+    fs::create_dir(at("folder")).unwrap();
+    for name in ["new", "dangling", "folder"] {
+        assert_eq!(create(&at(name), b"second").unwrap_err().kind, "exists", "{name}");
+    }
+    assert_eq!(create(&at("none/such"), b"second").unwrap_err().kind, "cannot-write");
+    assert_eq!(fs::read(at("new")).unwrap(), b"first");
+    assert_eq!(names(folder.path()), ["dangling", "folder", "new", "plain"]);
 }

@@ -3,6 +3,7 @@
 #![expect(clippy::unwrap_used, reason = "helpers of tests stand outside test functions")]
 
 mod answered;
+mod casts;
 mod cautions;
 mod demo;
 mod escapes;
@@ -13,6 +14,7 @@ mod new;
 mod rank;
 mod rank_answers;
 mod refused;
+mod since;
 mod stories;
 mod units;
 mod wells;

@@ -13,14 +13,14 @@ use crate::mix::limits::Check;
 use crate::mix::{Drawn, Gate, Mix, Setting, TargetStanding, WellState};
 use crate::problem::{Problem, Weight, is_harmful};
 use crate::site::Site;
-use crate::tasks::{Change, Context, MixAnswer, Move, PoolAnswer};
+use crate::tasks::{Change, ColdChange, Context, MixAnswer, Move, PoolAnswer, Since};
 use crate::units::{System, in_system};
 use crate::withdrawal::{End, Opening};
 
 use shape::{
-    BlockJson, CheckJson, ColdJson, DayJson, FlagJson, Head, LayeringJson, LevelJson, MixJson, MovedJson,
-    NowJson, OutletJson, PoolJson, ProblemJson, ProfileJson, ReleaseJson, SettingJson, TargetJson,
-    WarningJson, WellJson, ZoneJson,
+    BlockJson, CheckJson, ColdChangeJson, ColdJson, DayJson, FlagJson, Head, LayeringJson, LevelJson,
+    MixJson, MovedJson, NowJson, OutletJson, PoolJson, ProblemJson, ProfileJson, ReleaseJson, SettingJson,
+    SinceJson, TargetJson, WarningJson, WellJson, ZoneJson,
 };
 
 use super::sentence::{METHOD, caution};
@@ -122,9 +122,35 @@ pub fn pool(context: &Context, answer: &PoolAnswer) -> String {
                 }
             })
             .collect(),
+        since: answer.since.as_ref().map(since),
         caution: caution(),
     };
     written(&shown)
+}
+
+fn since(s: &Since) -> SinceJson {
+    let [thermocline_then_m, thermocline_now_m] = s.thermocline_m;
+    let [oxygen_min_then_mg_l, oxygen_min_now_mg_l] = s.oxygen_min_mg_l;
+    let cold = |c: &ColdChange| ColdChangeJson {
+        threshold_c: c.threshold_c,
+        usable_change_m3: c.usable_m3,
+        total_change_m3: c.total_m3,
+    };
+    SinceJson {
+        file: s.file.clone(),
+        taken: s.taken.to_rfc3339(),
+        days: s.days,
+        surface_change_c: s.surface_c,
+        bed_change_c: s.bed_c,
+        mean_change_c: s.mean_c,
+        pool_change_m: s.pool_m,
+        thermocline_then_m,
+        thermocline_now_m,
+        oxygen_min_then_mg_l,
+        oxygen_min_now_mg_l,
+        heat_w_m2: s.heat_w_m2,
+        cold_water: s.cold.iter().map(cold).collect(),
+    }
 }
 
 /// The answer of `check`.

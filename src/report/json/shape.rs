@@ -195,7 +195,33 @@ pub(super) struct PoolJson {
     pub(super) cold_water: Vec<ColdJson>,
     pub(super) cold_water_above_m: Option<f64>,
     pub(super) outlets: Vec<OutletJson>,
+    pub(super) since: Option<SinceJson>,
     pub(super) caution: &'static str,
+}
+
+/// The sound cast before: changes are above zero where there is more now.
+#[derive(Serialize)]
+pub(super) struct SinceJson {
+    pub(super) file: String,
+    pub(super) taken: String,
+    pub(super) days: f64,
+    pub(super) surface_change_c: f64,
+    pub(super) bed_change_c: f64,
+    pub(super) mean_change_c: f64,
+    pub(super) pool_change_m: f64,
+    pub(super) thermocline_then_m: Option<f64>,
+    pub(super) thermocline_now_m: Option<f64>,
+    pub(super) oxygen_min_then_mg_l: Option<f64>,
+    pub(super) oxygen_min_now_mg_l: Option<f64>,
+    pub(super) heat_w_m2: Option<f64>,
+    pub(super) cold_water: Vec<ColdChangeJson>,
+}
+
+#[derive(Serialize)]
+pub(super) struct ColdChangeJson {
+    pub(super) threshold_c: f64,
+    pub(super) usable_change_m3: Option<f64>,
+    pub(super) total_change_m3: f64,
 }
 
 #[derive(Serialize)]

@@ -3,10 +3,10 @@
 use std::fmt::Write as _;
 
 use crate::problem::harmless;
-use crate::tasks::{Context, PoolAnswer};
+use crate::tasks::{Context, PoolAnswer, Since};
 use crate::units::System;
 
-use super::{fitted, length, step, temperature, volume};
+use super::{fitted, length, oxygen, step, temperature, volume, wrapped};
 
 pub(super) fn layers(context: &Context, answer: &PoolAnswer) -> String {
     let system = context.system;
@@ -56,12 +56,65 @@ pub(super) fn layers(context: &Context, answer: &PoolAnswer) -> String {
             );
         }
     }
-    out.push_str(&cold_water(answer, system));
+    out.push_str(&since(context, answer));
+    out.push_str(&cold_water(context, answer));
     out.push('\n');
     out
 }
 
-fn cold_water(answer: &PoolAnswer, system: System) -> String {
+/// What the water did since the cast before.
+fn since(context: &Context, answer: &PoolAnswer) -> String {
+    let Some(s) = &answer.since else { return String::new() };
+    let system = context.system;
+    let between =
+        if s.days < 2.0 { format!("{:.0} hours", s.days * 24.0) } else { format!("{:.0} days", s.days) };
+    let mut out = format!(
+        "Since {} ({between}): surface {}, bed {}, mean {}; pool {}",
+        date(context, s),
+        bare(&signed(step(s.surface_c, system))),
+        bare(&signed(step(s.bed_c, system))),
+        signed(step(s.mean_c, system)),
+        signed(length(s.pool_m, system))
+    );
+    let thermocline = s.thermocline_m.map(|m| m.map(|m| length(m, system)));
+    let oxygen = s.oxygen_min_mg_l.map(|o| o.map(|o| oxygen(Some(o))));
+    for (name, [then, now], absent) in
+        [("thermocline", thermocline, "none"), ("lowest oxygen", oxygen, "unknown")]
+    {
+        let _ = match (then, now) {
+            (None, None) => Ok(()),
+            (Some(then), Some(now)) => write!(out, "; {name} {} to {now}", bare(&then)),
+            (Some(then), None) => write!(out, "; {name} {then} to {absent}"),
+            (None, Some(now)) => write!(out, "; {name} {absent} to {now}"),
+        };
+    }
+    if let Some(flux) = s.heat_w_m2 {
+        let _ = write!(out, "; heat {}", signed(format!("{flux:.0} W/m2")));
+    }
+    wrapped(&out, 1)
+}
+
+/// A figure without its unit, where the next one says it.
+fn bare(figure: &str) -> &str {
+    figure.split(' ').next().unwrap_or_default()
+}
+
+fn date(context: &Context, since: &Since) -> String {
+    since.taken.with_timezone(&context.site().offset).format("%Y-%m-%d").to_string()
+}
+
+/// A figure with its unit as a change: with a plus above zero, without a sign where it rounds to zero.
+fn signed(figure: String) -> String {
+    let is_zero = !bare(&figure).contains(|c| matches!(c, '1'..='9'));
+    match figure.strip_prefix('-') {
+        Some(bare) if is_zero => bare.to_owned(),
+        None if !is_zero => format!("+{figure}"),
+        _ => figure,
+    }
+}
+
+fn cold_water(context: &Context, answer: &PoolAnswer) -> String {
+    let system = context.system;
     let mut out = String::new();
     if answer.cold.is_empty() {
         return out;
@@ -84,6 +137,18 @@ fn cold_water(answer: &PoolAnswer, system: System) -> String {
             "usable: above {}, the lowest that the deepest usable outlet draws from",
             length(reach, system)
         );
+    }
+    if let Some(since) = &answer.since {
+        let changes = since.cold.iter().map(|c| {
+            let of = |m3: f64| signed(volume(m3, system));
+            let change = match (c.usable_m3.map(of), of(c.total_m3)) {
+                (Some(usable), total) => format!("{usable} usable, {} in all", bare(&total)),
+                (None, total) => format!("{total} in all"),
+            };
+            format!("below {} {change}", temperature(c.threshold_c, system))
+        });
+        let changes: Vec<String> = changes.collect();
+        out.push_str(&wrapped(&format!("since {}: {}", date(context, since), changes.join("; ")), 2));
     }
     out
 }
