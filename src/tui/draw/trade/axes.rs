@@ -12,9 +12,9 @@ use super::marks::Taken;
 use super::{TradePicture, TradePoint};
 
 /// Columns of the numbers up the side, with the line of the axis.
-const SIDE: usize = 6;
+pub(super) const SIDE: usize = 6;
 /// Rows over the plot and under it.
-const OVER: usize = 2;
+pub(super) const OVER: usize = 2;
 const UNDER: usize = 2;
 /// Least columns and rows of a plot.
 const LEAST: (usize, usize) = (12, 3);
@@ -96,23 +96,16 @@ impl Frame {
         rows - 1 - scale.cell(oxygen, rows).unwrap_or(0)
     }
 
-    pub(super) const fn left(&self) -> usize {
-        SIDE
-    }
-
-    pub(super) const fn top(&self) -> usize {
-        OVER
-    }
-
     /// Draws everything but the mixes, which will take what is `taken`.
     pub(super) fn draw(&self, picture: &TradePicture, taken: &[Taken], pen: &mut Pen, look: Look) {
         let ascii = look.symbols == Symbols::Ascii;
         self.heading(picture, pen);
+        self.lead(picture, pen, ascii);
         self.bounds(picture, pen, ascii);
         self.floor(picture, taken, pen, ascii);
         self.side(picture, pen, ascii);
         self.foot(picture, pen, ascii);
-        self.lead(picture, pen, ascii);
+        self.led(picture, pen);
     }
 
     fn heading(&self, picture: &TradePicture, pen: &mut Pen) {
@@ -259,16 +252,24 @@ impl Frame {
         }
     }
 
-    /// Lines from the selected mix to its values on both axes.
+    /// Lines from the selected mix to both axes.
     fn lead(&self, picture: &TradePicture, pen: &mut Pen, ascii: bool) {
         let Some((i, point)) = picture.selected() else { return };
         let (along, down) = if ascii { (".", ".") } else { ("╌", "╎") };
         let col = self.col(picture, point.temperature_c);
         let row = self.row(point, picture.place(i));
-        (row + 1..OVER + self.rows).for_each(|r| pen.fill(col, r, down, Role::Tried));
+        (row + 1..OVER + self.rows).for_each(|r| pen.put(col, r, down, Role::Tried));
+        if self.y.is_some() && point.oxygen_mg_l.is_some() {
+            (SIDE..col).for_each(|c| pen.put(c, row, along, Role::Tried));
+        }
+    }
+
+    /// The values they lead to, on the axes.
+    fn led(&self, picture: &TradePicture, pen: &mut Pen) {
+        let Some((i, point)) = picture.selected() else { return };
+        let (col, row) = (self.col(picture, point.temperature_c), self.row(point, picture.place(i)));
         pen.put(col, OVER + self.rows, "^", Role::Tried);
         if let (Some(_), Some(oxygen)) = (self.y, point.oxygen_mg_l) {
-            (SIDE..col).for_each(|c| pen.fill(c, row, along, Role::Tried));
             pen.put(0, row, "     ", Role::Plain);
             pen.put_before(SIDE - 2, row, &format!("{oxygen:.1}"), Role::Chosen);
             pen.put(SIDE - 1, row, ">", Role::Tried);

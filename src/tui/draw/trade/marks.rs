@@ -3,7 +3,7 @@
 use crate::tui::draw::pen::Pen;
 use crate::tui::{Look, Role, Symbols};
 
-use super::axes::Frame;
+use super::axes::{Frame, OVER, SIDE};
 use super::{TradePicture, TradePoint};
 
 /// Marks that stand together take at most so many columns.
@@ -75,8 +75,8 @@ impl Cluster {
             }
             before += text.len() + 1;
         }
-        let last = (frame.left() + frame.cols).saturating_sub(self.width());
-        start.clamp(frame.left(), last.max(frame.left()))
+        let last = (SIDE + frame.cols).saturating_sub(self.width());
+        start.clamp(SIDE, last.max(SIDE))
     }
 }
 
@@ -98,7 +98,7 @@ fn marks(picture: &TradePicture, frame: &Frame) -> Vec<Mark> {
 pub(super) fn clusters(picture: &TradePicture, frame: &Frame) -> Vec<(usize, Cluster)> {
     let marks = marks(picture, frame);
     let mut out = Vec::new();
-    for row in frame.top()..frame.top() + frame.rows {
+    for row in OVER..OVER + frame.rows {
         let mut here: Vec<Mark> = marks.iter().filter(|m| m.row == row).cloned().collect();
         here.sort_by_key(|m| m.col);
         let mut clusters: Vec<Cluster> = here.into_iter().map(|m| Cluster(vec![m])).collect();
@@ -205,7 +205,7 @@ fn unbeaten(picture: &TradePicture, frame: &Frame, pen: &mut Pen, look: Look) {
                 Symbols::Ascii => cell(0, 0).then_some('*'),
             };
             if let Some(symbol) = symbol {
-                pen.put(frame.left() + col, frame.top() + row, &symbol.to_string(), Role::Oxygen);
+                pen.put(SIDE + col, OVER + row, &symbol.to_string(), Role::Oxygen);
             }
         }
     }
