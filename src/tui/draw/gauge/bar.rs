@@ -10,7 +10,7 @@ use super::{Attainable, Gauge, Held, Reading};
 /// Least width of an axis, display units (choice): noise must not fill it.
 const LEAST_WIDTH: f64 = 2.0;
 /// Cells a tick with its label wants.
-const TICK_CELLS: usize = 8;
+const TICK_CELLS: usize = 4;
 /// What is attainable widens the axis to no more than so many times what it holds without it (choice).
 const WIDENED: f64 = 2.0;
 
@@ -73,7 +73,7 @@ impl Axis {
                 (low, high) = (wider_low, wider_high);
             }
         }
-        let most = u32::try_from(cells / TICK_CELLS).unwrap_or(2).clamp(2, 9);
+        let most = u32::try_from(cells / TICK_CELLS).unwrap_or(9).clamp(3, 9);
         let mut scale = Scale::round(low, high, LEAST_WIDTH, most);
         if low >= 0.0 && scale.low() < 0.0 {
             scale = Scale::round(0.0, high.max(LEAST_WIDTH), 0.0, most);
@@ -164,18 +164,25 @@ impl Axis {
         }
     }
 
-    /// Numbers of the ticks, each under its cell where it does not touch the one before.
+    /// Numbers of the ticks, each under its cell: of every one, or of every second or third, so that none touch.
     pub(super) fn labels(&self, pen: &mut Pen, (x, row): (usize, usize)) {
         let decimals = decimals(&self.ticks);
-        let mut free = 0;
-        for value in &self.ticks {
-            let text = format!("{value:.decimals$}");
-            let last = self.cells.saturating_sub(text.len());
-            let at = self.nearest(*value).saturating_sub(text.len() / 2).min(last);
-            if at >= free && text.len() <= self.cells {
-                pen.put(x + at, row, &text, Role::Quiet);
-                free = at + text.len() + 1;
-            }
+        let labels: Vec<(usize, String)> = self
+            .ticks
+            .iter()
+            .map(|value| {
+                let text = format!("{value:.decimals$}");
+                let last = self.cells.saturating_sub(text.len());
+                (self.nearest(*value).saturating_sub(text.len() / 2).min(last), text)
+            })
+            .collect();
+        let apart = |every: &usize| {
+            let kept: Vec<&(usize, String)> = labels.iter().step_by(*every).collect();
+            kept.windows(2).all(|pair| pair[0].0 + pair[0].1.len() < pair[1].0)
+        };
+        let every = (1..labels.len()).find(apart).unwrap_or(labels.len().max(1));
+        for (at, text) in labels.iter().step_by(every) {
+            pen.put(x + at, row, text, Role::Quiet);
         }
     }
 }

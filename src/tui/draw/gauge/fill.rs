@@ -3,7 +3,7 @@
 use crate::mix::{Mix, Spread, TargetStanding};
 use crate::problem::harmless;
 use crate::site::Site;
-use crate::target::Target;
+use crate::target::{Statistic, Target};
 use crate::tasks::rank::Shown;
 use crate::units::{Dimension, System};
 
@@ -116,7 +116,8 @@ impl Gauge {
                 preferred: None,
                 buffer: 0.0,
                 value: s.oxygen_mg_l,
-                statistic: "day".to_owned(),
+                statistic: if rule.statistic == Statistic::DailyMean { "daily mean" } else { "least" }
+                    .to_owned(),
                 standing: s.oxygen.0,
                 by: s.oxygen.1,
                 share: s.oxygen_share_inside,

@@ -84,7 +84,7 @@ pub(super) fn draw(gauge: &Gauge, area: Rect, buf: &mut Buffer, look: Look) {
                 } else {
                     columns.label + 1 + columns.bar + usize::from(columns.bar > 0)
                 };
-                pen.put(left, row, &words, bar.words_role);
+                pen.put(left, row, whole_words(&words, width.saturating_sub(left)), bar.words_role);
                 row += usize::from(columns.stacked);
                 if let Some(axis) = &axis {
                     axis.paint(&mut pen, (columns.bar_at(), row), gauge, &bar.bar, look);
@@ -134,9 +134,8 @@ fn title(pen: &mut Pen, gauge: &Gauge, width: usize, row: usize, unsaid: usize) 
     let more = format!("and {unsaid} more target{}", if unsaid == 1 { "" } else { "s" });
     let note = if unsaid > 0 { Some(&more) } else { gauge.note.as_ref() };
     let room = width.saturating_sub(heading.width() + 2);
-    if let Some(note) = note.filter(|_| room >= 5) {
-        let role = if unsaid > 0 { Role::Warn } else { Role::Quiet };
-        pen.put_before(width, row, &cut(note, room), role);
+    if let Some(note) = note.filter(|note| note.width() <= room) {
+        pen.put_before(width, row, note, if unsaid > 0 { Role::Warn } else { Role::Quiet });
     }
 }
 
@@ -194,21 +193,28 @@ fn lines(gauge: &Gauge, width: usize) -> Vec<Line> {
     out
 }
 
-/// Pieces joined by commas into lines; one that is wider than a line is cut.
+/// Pieces joined by commas into lines, none broken; one that is wider than a line is cut.
 fn wrapped(pieces: &[String], width: usize) -> Vec<String> {
     let mut out: Vec<String> = Vec::new();
-    for (i, piece) in pieces.iter().enumerate() {
-        let comma = if i + 1 < pieces.len() { "," } else { "" };
-        let piece = cut(piece, width.saturating_sub(comma.len())) + comma;
+    for piece in pieces {
         match out.last_mut() {
-            Some(line) if line.width() + 1 + piece.width() <= width => {
-                line.push(' ');
-                line.push_str(&piece);
+            Some(line) if line.width() + 2 + piece.width() <= width => {
+                line.push_str(", ");
+                line.push_str(piece);
             }
-            _ => out.push(piece),
+            _ => out.push(cut(piece, width)),
         }
     }
     out
+}
+
+/// As many whole words as fit: half a number is another number.
+fn whole_words(text: &str, room: usize) -> &str {
+    let mut text = text;
+    while text.width() > room {
+        text = text.rfind(' ').map_or("", |end| &text[..end]);
+    }
+    text.trim_end_matches(" by")
 }
 
 /// `ABOVE by 0.4 F`, as the text report says it; a miss smaller than the last digit shown must not read as none.
@@ -228,11 +234,11 @@ impl Gauge {
         let with_unit = |value: f64| format!("{} {unit}", self.figure(value));
         let mut out = vec![held.name.clone()];
         out.extend(held.governs.then(|| "governs".to_owned()));
-        let apart = |v: &f64| self.tried.value.is_none_or(|t| self.figure(t) != self.figure(*v));
+        let apart = |v: &f64| self.tried.value.is_some_and(|t| self.figure(t) != self.figure(*v));
         out.extend(held.value.filter(apart).map(|v| format!("{} {}", held.statistic, with_unit(v))));
         let percent = |share: f64| format!("{:.0} %", 100.0 * share);
         out.extend(held.share.map(|s| format!("{} of cases inside", percent(s))));
-        out.extend(held.share_both.map(|s| format!("{} with oxygen", percent(s))));
+        out.extend(held.share_both.map(|s| format!("{} in oxygen too", percent(s))));
         out.push(match (held.low, held.high) {
             (Some(low), Some(high)) => format!("{} to {}", self.figure(low), with_unit(high)),
             (Some(low), None) => format!("at least {}", with_unit(low)),
@@ -287,8 +293,12 @@ impl Gauge {
             Attainable::Computing => (["being computed", "computing"].map(str::to_owned), Role::Quiet, None),
             Attainable::Known(ends) => (said(ends), Role::Plain, Some(ends)),
             Attainable::Before(ends) => {
-                let [full, short] = said(ends);
-                ([format!("{full}, from before"), format!("{short} before")], Role::Old, Some(ends))
+                let [low, high] = ends.map(|end| self.figure(end));
+                (
+                    [format!("{low} to {high} (from before)"), format!("{low}-{high} before")],
+                    Role::Old,
+                    Some(ends),
+                )
             }
         };
         let label = ["attainable", "attain"].map(str::to_owned);

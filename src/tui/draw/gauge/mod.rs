@@ -100,8 +100,8 @@ const BETWEEN: u16 = 2;
 ///
 /// ```text
 /// Temperature F                              at 1,200 cfs
-/// summer rearing and holding, 88 % of cases inside
-/// 48.0 to 56.0 F, P preferred 52.0 F
+/// summer rearing and holding, 92 % of cases inside
+/// 55 % in oxygen too, 48.0 to 56.0 F, P preferred 52.0 F
 /// range      [=======P=======]     inside
 /// tried      :          |-o--|     54.6 F (53.5 to 56.1)
 /// now        :          |-o--|     54.6 F (53.5 to 56.1)

@@ -8,12 +8,13 @@ use crate::tui::draw::pen::{Pen, cut, decimals};
 use crate::tui::{Look, Role, Symbols};
 use crate::units::Dimension;
 
+use super::marks::Taken;
 use super::{TradePicture, TradePoint};
 
 /// Columns of the numbers up the side, with the line of the axis.
-const SIDE: usize = 6;
+pub(super) const SIDE: usize = 6;
 /// Rows over the plot and under it.
-const OVER: usize = 2;
+pub(super) const OVER: usize = 2;
 const UNDER: usize = 2;
 /// Least columns and rows of a plot.
 const LEAST: (usize, usize) = (12, 3);
@@ -23,7 +24,7 @@ const LEAST_WIDTH: f64 = 1.0;
 const NEAR: f64 = 0.35;
 /// Cells a tick wants along and up.
 const TICK_COLS: usize = 8;
-const TICK_ROWS: usize = 3;
+const TICK_ROWS: usize = 2;
 
 /// Where the plot lies and its scales: temperature in the unit shown, oxygen in mg/L.
 pub(super) struct Frame {
@@ -95,34 +96,27 @@ impl Frame {
         rows - 1 - scale.cell(oxygen, rows).unwrap_or(0)
     }
 
-    pub(super) const fn left(&self) -> usize {
-        SIDE
-    }
-
-    pub(super) const fn top(&self) -> usize {
-        OVER
-    }
-
-    /// Draws everything but the mixes.
-    pub(super) fn draw(&self, picture: &TradePicture, pen: &mut Pen, look: Look) {
+    /// Draws everything but the mixes, which will take what is `taken`.
+    pub(super) fn draw(&self, picture: &TradePicture, taken: &[Taken], pen: &mut Pen, look: Look) {
         let ascii = look.symbols == Symbols::Ascii;
         self.heading(picture, pen);
-        self.bounds(picture, pen, ascii);
-        self.floor(picture, pen, ascii);
-        self.side(pen, ascii);
-        self.foot(picture, pen, ascii);
         self.lead(picture, pen, ascii);
+        self.bounds(picture, pen, ascii);
+        self.floor(picture, taken, pen, ascii);
+        self.side(picture, pen, ascii);
+        self.foot(picture, pen, ascii);
+        self.led(picture, pen);
     }
 
     fn heading(&self, picture: &TradePicture, pen: &mut Pen) {
-        let said = picture.selected().map_or_else(
-            || "no mix selected".to_owned(),
-            |(i, point)| format!("[{}] {}", i + 1, picture.words(point)),
-        );
+        let said = picture.selected_words();
         pen.put(0, 0, &said, Role::Strong);
+        let room = self.width.saturating_sub(said.width() + 2);
         let mut legend = Vec::new();
         if self.y.is_none() {
-            legend.push("oxygen not measured: temperature alone");
+            let short = "oxygen not measured";
+            let full = "oxygen not measured: temperature alone";
+            legend.push(if full.len() <= room { full } else { short });
         }
         if picture.of_day {
             legend.push("means of the day");
@@ -133,7 +127,6 @@ impl Frame {
         if self.y.is_some() && !picture.unbeaten.is_empty() {
             legend.push("o unbeaten");
         }
-        let room = self.width.saturating_sub(said.width() + 2);
         while legend.join(", ").len() > room && legend.len() > 1 {
             legend.pop();
         }
@@ -158,26 +151,30 @@ impl Frame {
             let number = picture.temperature(c);
             let at = picture.shown(c);
             let (below, above) = (at < self.x.low(), at > self.x.high());
-            let text = match (below, above) {
-                (true, _) => format!("<{word}{number}"),
-                (_, true) => format!("{word}{number}>"),
-                _ => format!("{word}{number}"),
-            };
+            let (open, close) = (if below { "<" } else { "" }, if above { ">" } else { "" });
             let col = self.col(picture, c);
             if !below && !above {
                 (0..self.rows).for_each(|row| pen.put(col, OVER + row, line, Role::Range));
             }
-            let last = (SIDE + self.cols).saturating_sub(text.len());
-            let start = col.saturating_sub(text.len() / 2).clamp(SIDE, last.max(SIDE));
-            let end = start + text.len();
-            if taken.iter().all(|&(from, to)| end < from || to < start) {
-                pen.put(start, 1, &text, Role::Range);
-                taken.push((start, end));
+            let place = |text: &str| {
+                let last = (SIDE + self.cols).saturating_sub(text.len()).max(SIDE);
+                let places = [text.len() / 2, 0, text.len() - 1].map(|back| col.saturating_sub(back));
+                let free = |start: &usize| taken.iter().all(|t| start + text.len() < t.0 || t.1 < *start);
+                places.into_iter().map(|start| start.clamp(SIDE, last)).find(free)
+            };
+            let texts = [format!("{open}{word}{number}{close}"), format!("{open}{number}{close}")];
+            let said = texts.iter().find_map(|text| Some((place(text)?, text)));
+            if let Some((start, text)) = said.filter(|s| s.1.starts_with(word) || word != "P ") {
+                pen.put(start, 1, text, Role::Range);
+                taken.push((start, start + text.len()));
+            } else if word == "P " && !below && !above {
+                pen.put(col, OVER, "P", Role::Range);
             }
         }
     }
 
-    fn floor(&self, picture: &TradePicture, pen: &mut Pen, ascii: bool) {
+    /// The floor as a line, its label where no mix stands.
+    fn floor(&self, picture: &TradePicture, taken: &[Taken], pen: &mut Pen, ascii: bool) {
         let (Some(floor), Some(y)) = (picture.floor_mg_l, self.y) else { return };
         let end = SIDE + self.cols;
         if floor < y.low() {
@@ -187,21 +184,36 @@ impl Frame {
         } else {
             let row = OVER + self.up(&y, floor);
             (SIDE..end).for_each(|col| pen.put(col, row, if ascii { "-" } else { "─" }, Role::Range));
-            pen.put_before(end, row, &format!(" floor {floor:.1}"), Role::Range);
+            let label = format!(" floor {floor:.1} ");
+            let right = end.saturating_sub(label.len());
+            let rows = [row, row + 1, row.saturating_sub(1)];
+            let places = rows.into_iter().flat_map(|row| [(right, row), (SIDE + 1, row)]);
+            let inside = |row: usize| (OVER..OVER + self.rows).contains(&row);
+            let free = |&(col, row): &(usize, usize)| {
+                inside(row)
+                    && taken.iter().all(|t| t.row != row || col + label.len() <= t.from || t.to <= col)
+            };
+            let (col, row) = places.into_iter().find(free).unwrap_or((right, row));
+            pen.put(col, row, &label, Role::Range);
         }
     }
 
     /// The axis of oxygen.
-    fn side(&self, pen: &mut Pen, ascii: bool) {
+    fn side(&self, picture: &TradePicture, pen: &mut Pen, ascii: bool) {
         for row in 0..self.rows {
             pen.put(SIDE - 1, OVER + row, if ascii { "|" } else { "│" }, Role::Quiet);
         }
         let Some(y) = self.y else { return };
         let ticks = ticks(y.low(), y.high(), ticks_in(self.plot_rows(), TICK_ROWS));
         let decimals = decimals(&ticks).max(1);
+        let selected = picture.selected().and_then(|(_, p)| p.oxygen_mg_l).map(|o| format!("{o:.1}"));
         for value in ticks {
             let row = OVER + self.up(&y, value);
-            pen.put_before(SIDE - 1, row, &format!("{value:.decimals$} "), Role::Quiet);
+            let text = format!("{value:.decimals$}");
+            // beside the value of the selected mix the same number would stand twice
+            if selected.as_ref() != Some(&text) {
+                pen.put_before(SIDE - 1, row, &(text + " "), Role::Quiet);
+            }
             pen.put(SIDE - 1, row, if ascii { "+" } else { "┤" }, Role::Quiet);
         }
         if self.unknown_row {
@@ -240,16 +252,24 @@ impl Frame {
         }
     }
 
-    /// Lines from the selected mix to its values on both axes.
+    /// Lines from the selected mix to both axes.
     fn lead(&self, picture: &TradePicture, pen: &mut Pen, ascii: bool) {
         let Some((i, point)) = picture.selected() else { return };
         let (along, down) = if ascii { (".", ".") } else { ("╌", "╎") };
         let col = self.col(picture, point.temperature_c);
         let row = self.row(point, picture.place(i));
-        (row + 1..OVER + self.rows).for_each(|r| pen.fill(col, r, down, Role::Tried));
+        (row + 1..OVER + self.rows).for_each(|r| pen.put(col, r, down, Role::Tried));
+        if self.y.is_some() && point.oxygen_mg_l.is_some() {
+            (SIDE..col).for_each(|c| pen.put(c, row, along, Role::Tried));
+        }
+    }
+
+    /// The values they lead to, on the axes.
+    fn led(&self, picture: &TradePicture, pen: &mut Pen) {
+        let Some((i, point)) = picture.selected() else { return };
+        let (col, row) = (self.col(picture, point.temperature_c), self.row(point, picture.place(i)));
         pen.put(col, OVER + self.rows, "^", Role::Tried);
         if let (Some(_), Some(oxygen)) = (self.y, point.oxygen_mg_l) {
-            (SIDE..col).for_each(|c| pen.fill(c, row, along, Role::Tried));
             pen.put(0, row, "     ", Role::Plain);
             pen.put_before(SIDE - 2, row, &format!("{oxygen:.1}"), Role::Chosen);
             pen.put(SIDE - 1, row, ">", Role::Tried);
@@ -258,7 +278,7 @@ impl Frame {
 }
 
 fn ticks_in(cells: usize, each: usize) -> u32 {
-    u32::try_from(cells / each).unwrap_or(9).clamp(2, 9)
+    u32::try_from(cells / each).unwrap_or(9).clamp(3, 9)
 }
 
 /// A scale over values and the bounds near them.
@@ -291,10 +311,8 @@ impl TradePicture {
         let width = usize::from(area.width);
         let said = if self.mixes.is_empty() && self.now.is_none() {
             "no mix to draw".to_owned()
-        } else if let Some((i, point)) = self.selected() {
-            format!("[{}] {}", i + 1, self.words(point))
         } else {
-            "no mix selected".to_owned()
+            self.selected_words()
         };
         pen.put(0, 0, &cut(&said, width), Role::Strong);
         if let Some(now) = &self.now {

@@ -3,14 +3,14 @@
 use crate::tui::draw::pen::Pen;
 use crate::tui::{Look, Role, Symbols};
 
-use super::axes::Frame;
+use super::axes::{Frame, OVER, SIDE};
 use super::{TradePicture, TradePoint};
 
 /// Marks that stand together take at most so many columns.
 const TOGETHER: usize = 12;
 
-/// A mark of the picture: the setting now, or a ranked mix.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+/// What a mark stands for: the setting now, or a ranked mix.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
 enum Of {
     Now,
     Mix(usize),
@@ -26,7 +26,14 @@ struct Mark {
 }
 
 /// Marks of one row that would touch, written with commas between.
-struct Cluster(Vec<Mark>);
+pub(super) struct Cluster(Vec<Mark>);
+
+/// Cells that marks take in a row: from a column up to, not including, another.
+pub(super) struct Taken {
+    pub(super) row: usize,
+    pub(super) from: usize,
+    pub(super) to: usize,
+}
 
 impl Cluster {
     /// What is written and by which mark each piece: those that do not fit are counted.
@@ -36,14 +43,19 @@ impl Cluster {
         if width(&all) <= TOGETHER + 1 {
             return all;
         }
-        let first = self.0.iter().position(|m| m.selected).unwrap_or(0);
-        let mut kept = vec![all[first].clone()];
-        for piece in all.iter().enumerate().filter(|(i, _)| *i != first).map(|(_, p)| p) {
-            if width(&kept) + piece.1.len() + 1 + 3 > TOGETHER + 1 {
-                break;
-            }
-            kept.push(piece.clone());
-        }
+        let mut order: Vec<&Mark> = self.0.iter().collect();
+        order.sort_by_key(|m| (!m.selected, m.of));
+        let mut used = "+10".len();
+        let chosen: Vec<Of> = order
+            .iter()
+            .take_while(|m| {
+                used += m.text.len() + 1;
+                used <= TOGETHER
+            })
+            .map(|m| m.of)
+            .collect();
+        let is_kept = |p: &(Option<&Mark>, String)| p.0.is_some_and(|m| chosen.contains(&m.of));
+        let mut kept: Vec<(Option<&Mark>, String)> = all.iter().filter(|p| is_kept(p)).cloned().collect();
         let more = all.len() - kept.len();
         kept.push((None, format!("+{more}")));
         kept
@@ -63,8 +75,8 @@ impl Cluster {
             }
             before += text.len() + 1;
         }
-        let last = (frame.left() + frame.cols).saturating_sub(self.width());
-        start.clamp(frame.left(), last.max(frame.left()))
+        let last = (SIDE + frame.cols).saturating_sub(self.width());
+        start.clamp(SIDE, last.max(SIDE))
     }
 }
 
@@ -83,10 +95,10 @@ fn marks(picture: &TradePicture, frame: &Frame) -> Vec<Mark> {
 }
 
 /// Clusters of every row, none touching another.
-fn clusters(picture: &TradePicture, frame: &Frame) -> Vec<(usize, Cluster)> {
+pub(super) fn clusters(picture: &TradePicture, frame: &Frame) -> Vec<(usize, Cluster)> {
     let marks = marks(picture, frame);
     let mut out = Vec::new();
-    for row in frame.top()..frame.top() + frame.rows {
+    for row in OVER..OVER + frame.rows {
         let mut here: Vec<Mark> = marks.iter().filter(|m| m.row == row).cloned().collect();
         here.sort_by_key(|m| m.col);
         let mut clusters: Vec<Cluster> = here.into_iter().map(|m| Cluster(vec![m])).collect();
@@ -100,9 +112,24 @@ fn clusters(picture: &TradePicture, frame: &Frame) -> Vec<(usize, Cluster)> {
     out
 }
 
-pub(super) fn draw(picture: &TradePicture, frame: &Frame, pen: &mut Pen, look: Look) {
+/// The cells that clusters take.
+pub(super) fn taken(clusters: &[(usize, Cluster)], frame: &Frame) -> Vec<Taken> {
+    let of = |(row, cluster): &(usize, Cluster)| {
+        let from = cluster.start(frame);
+        Taken { row: *row, from, to: from + cluster.width() }
+    };
+    clusters.iter().map(of).collect()
+}
+
+pub(super) fn draw(
+    picture: &TradePicture,
+    frame: &Frame,
+    clusters: &[(usize, Cluster)],
+    pen: &mut Pen,
+    look: Look,
+) {
     unbeaten(picture, frame, pen, look);
-    for (row, cluster) in clusters(picture, frame) {
+    for &(row, ref cluster) in clusters {
         let mut col = cluster.start(frame);
         for (n, (mark, text)) in cluster.pieces().into_iter().enumerate() {
             if n > 0 {
@@ -178,7 +205,7 @@ fn unbeaten(picture: &TradePicture, frame: &Frame, pen: &mut Pen, look: Look) {
                 Symbols::Ascii => cell(0, 0).then_some('*'),
             };
             if let Some(symbol) = symbol {
-                pen.put(frame.left() + col, frame.top() + row, &symbol.to_string(), Role::Oxygen);
+                pen.put(SIDE + col, OVER + row, &symbol.to_string(), Role::Oxygen);
             }
         }
     }

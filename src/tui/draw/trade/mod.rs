@@ -68,8 +68,9 @@ pub fn trade(picture: &TradePicture, area: Rect, buf: &mut Buffer, look: Look) {
         picture.in_words(&mut pen, area);
         return;
     };
-    frame.draw(picture, &mut pen, look);
-    marks::draw(picture, &frame, &mut pen, look);
+    let marks = marks::clusters(picture, &frame);
+    frame.draw(picture, &marks::taken(&marks, &frame), &mut pen, look);
+    marks::draw(picture, &frame, &marks, &mut pen, look);
 }
 
 /// The ranked mix drawn at a cell of the buffer, for the mouse.
@@ -90,9 +91,20 @@ impl TradePicture {
         self.system.unit(Dimension::Temperature).from_si(c)
     }
 
-    /// `52.9 F, 7.0 mg/L`
+    /// `[1] 52.9 F, 7.0 mg/L`
+    fn selected_words(&self) -> String {
+        self.selected().map_or_else(
+            || "no mix selected".to_owned(),
+            |(i, point)| format!("[{}] {}", i + 1, self.words(point)),
+        )
+    }
+
+    /// `52.9 F, 7.0 mg/L`; what is known of none is not said of each.
     fn words(&self, point: &TradePoint) -> String {
         let unit = self.system.unit(Dimension::Temperature).symbol();
+        if self.airless() {
+            return format!("{} {unit}", self.temperature(point.temperature_c));
+        }
         let oxygen =
             point.oxygen_mg_l.map_or_else(|| "oxygen unknown".to_owned(), |o| format!("{o:.1} mg/L"));
         format!("{} {unit}, {oxygen}", self.temperature(point.temperature_c))
