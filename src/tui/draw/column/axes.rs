@@ -21,9 +21,11 @@ pub(super) fn elevations(picture: &Picture, layout: &Layout, pen: &mut Pen) {
     pen.text_before(layout.wall, layout.area.y, unit.symbol(), Role::Quiet);
     let surface = figure(picture.surface_m, unit, u8::from(layout.wide));
     let surface_row = layout.surface_row(picture);
-    let mut taken: Vec<u16> = surface_row.into_iter().collect();
+    let bed_row = layout.bed_row(picture);
+    let mut taken: Vec<u16> = surface_row.into_iter().chain(bed_row).collect();
     pen.text_before(layout.wall, surface_row.unwrap_or(top), &surface, Role::Strong);
-    pen.text_before(layout.wall, bed, &figure(low, unit, u8::from(layout.wide)), Role::Strong);
+    let bottom = figure(picture.bed_m, unit, u8::from(layout.wide));
+    pen.text_before(layout.wall, bed_row.unwrap_or(bed), &bottom, Role::Strong);
     let row_m = (high - low) / f64::from(layout.rows);
     if let Some(scale) = Scale::new(unit.from_si(low), unit.from_si(high)) {
         let marks = scale.marks(u32::from(layout.rows / 2).max(1));
@@ -31,7 +33,7 @@ pub(super) fn elevations(picture: &Picture, layout: &Layout, pen: &mut Pen) {
             let elevation_m = unit.to_si(value);
             let row = layout.row(elevation_m);
             // surface and bed have their own
-            let ends = [picture.surface_m, low].iter().any(|z| (elevation_m - z).abs() < row_m);
+            let ends = [picture.surface_m, picture.bed_m].iter().any(|z| (elevation_m - z).abs() < row_m);
             if !ends && !taken.contains(&row) {
                 taken.push(row);
                 pen.text_before(layout.wall, row, &figure(elevation_m, unit, marks.decimals), Role::Quiet);
@@ -56,7 +58,8 @@ pub(super) fn elevations(picture: &Picture, layout: &Layout, pen: &mut Pen) {
         }
     }
     let line = if surface_row.is_some() { pen.lines.rule } else { pen.lines.surface };
-    for (row, line) in [(top, line), (bed, pen.lines.bed)] {
+    let foot = if bed_row.is_some() { pen.lines.rule } else { pen.lines.bed };
+    for (row, line) in [(top, line), (bed, foot)] {
         pen.text(layout.wall, row, 1, pen.lines.tick, Role::Plain);
         pen.behind(layout.wall, layout.area.right(), row, line, Role::Plain);
     }

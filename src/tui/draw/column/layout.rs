@@ -160,6 +160,11 @@ impl Layout {
     pub(super) fn surface_row(&self, picture: &Picture) -> Option<u16> {
         (self.elevation.high() > picture.surface_m).then(|| self.row(picture.surface_m))
     }
+
+    /// Row of the bed where the picture reaches below it; without, the bed is the rule below the water.
+    pub(super) fn bed_row(&self, picture: &Picture) -> Option<u16> {
+        (self.elevation.low() < picture.bed_m).then(|| self.row(picture.bed_m))
+    }
 }
 
 fn elevation_scale(picture: &Picture) -> Option<Scale> {

@@ -1,4 +1,4 @@
-//! What is written into the water: flags, the cold threshold, thermocline, mixed base, the surface under air.
+//! What is written into the water: flags, the cold threshold, thermocline, mixed base, surface and bed inside the picture.
 
 use ratatui::layout::Rect;
 
@@ -34,7 +34,8 @@ pub(super) fn draw(picture: &Picture, layout: &Layout, pen: &mut Pen) {
         }
     }
     if let Some((_, column)) = cold {
-        for row in layout.row(picture.surface_m)..layout.curves.bottom() {
+        let foot = layout.bed_row(picture).unwrap_or(layout.curves.bottom());
+        for row in layout.row(picture.surface_m)..foot {
             pen.behind(column, column + 1, row, pen.lines.threshold, Role::Cold);
         }
     }
@@ -42,8 +43,11 @@ pub(super) fn draw(picture: &Picture, layout: &Layout, pen: &mut Pen) {
     for row in told {
         pen.behind(layout.curves.x, layout.curves.right(), row, pen.lines.level, Role::Quiet);
     }
-    if let Some(row) = layout.surface_row(picture) {
-        pen.behind(layout.wall, layout.area.right(), row, pen.lines.surface, Role::Plain);
+    let ends = [(layout.surface_row(picture), pen.lines.surface), (layout.bed_row(picture), pen.lines.bed)];
+    for (row, line) in ends {
+        if let Some(row) = row {
+            pen.behind(layout.wall, layout.area.right(), row, line, Role::Plain);
+        }
     }
 }
 

@@ -167,7 +167,7 @@ fn found(buf: &Buffer, text: &str) -> (u16, u16) {
 fn scenario_meaning_has_a_style_beside_its_sign() {
     let buf = drawn(&picture(), 64, 20, Symbols::Braille);
     let look = look(Symbols::Braille);
-    let at = |text| buf[found(&buf, text)].style();
+    let at = |text: &str| buf[found(&buf, text)].style();
     let has = |text: &str, modifier| at(text).add_modifier.contains(modifier);
     assert!(has(">B", Modifier::REVERSED) && !has("=C", Modifier::REVERSED));
     assert!(has(">A", Modifier::BOLD) && !has("|Low", Modifier::BOLD));
@@ -191,11 +191,17 @@ fn scenario_two_pictures_on_fixed_scales_compare() {
     };
     let mut two = one.clone();
     two.surface_m = 138.0;
+    for picture in [&mut one, &mut two] {
+        picture.gates.clear();
+    }
     two.water.temperature = vec![(100.0, 2.0), (138.0, 29.0)];
     two.water.oxygen = vec![vec![(100.0, 0.0), (138.0, 12.0)]];
     let [one, two] = [one, two].map(|p| lines(&drawn(&p, 60, 20, Symbols::Ascii)));
     assert_eq!((&one[0], one.last()), (&two[0], two.last()));
-    assert!(one[0].ends_with("T 0    5     10    15   20    25    30 C"), "{}", one[0]);
+    assert!(one[0].ends_with("T 0       10       20       30 C"), "{}", one[0]);
+    let row = |lines: &[String], label: &str| lines.iter().position(|l| l.starts_with(label)).unwrap();
+    assert_eq!(row(&one, "100.0+="), row(&two, "100.0+="));
+    assert!(row(&one, "140.0+~") < row(&two, "138.0+~"), "{one:#?} {two:#?}");
 }
 
 #[test]
@@ -215,7 +221,7 @@ fn scenario_the_cursor_reads_what_is_there() {
     picture.system = System::Us;
     picture.cursor_m = Some(400.0 * FOOT_M);
     let lines = lines(&drawn(&picture, 50, 18, Symbols::Ascii));
-    assert_eq!(lines.last().unwrap(), "400.0 ft  55.3 F  6.5 mg/L");
+    assert_eq!(lines.last().unwrap(), "400.0 ft  56.1 F  6.5 mg/L");
 }
 
 #[test]
