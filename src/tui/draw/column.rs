@@ -68,7 +68,7 @@ pub struct GateMark {
     pub name: String,
     /// Centre-line, or the crest, m.
     pub centre_m: f64,
-    /// Top and bottom of the opening, m.
+    /// Top of the opening, m.
     pub top_m: f64,
     /// Bottom of the opening, m.
     pub bottom_m: f64,

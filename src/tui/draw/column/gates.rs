@@ -76,8 +76,8 @@ fn laid(picture: &Picture, layout: &Layout) -> (Vec<Span>, Vec<(u16, u16, usize)
         let mut x = layout.gates.x;
         for (k, &gate) in gates.iter().enumerate() {
             let left = gates.len() - k;
-            // room for "+2" is kept as long as others follow
-            let tail = if left > 1 { 3 } else { 1 };
+            // room for "+2" and a blank is kept as long as others follow
+            let tail = if left > 1 { 4 } else { 1 };
             let room = end.saturating_sub(x + 1 + tail);
             let text = text(&picture.gates[gate], room.saturating_sub(1));
             let whole = cells(&harmless(&picture.gates[gate].name)) < room;

@@ -81,7 +81,7 @@ impl Layout {
         let top = area.y + 2;
         let part = |x: u16, width: u16| Rect { x, y: top, width, height: rows };
         let notes = area.width >= NOTES;
-        let most = if notes { area.width / 3 } else { area.width * 3 / 10 };
+        let most = if notes { area.width / 3 } else { area.width * 3 / 10 + 1 };
         let mut layout = Self {
             area,
             top,
