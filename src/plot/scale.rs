@@ -106,18 +106,21 @@ impl Scale {
         let Some(size) = [1.0, 2.0, 5.0, 10.0, 20.0, 50.0].map(|m| m * power).into_iter().find(fits) else {
             return Marks::default();
         };
+        let (first, last) = ends(size);
+        if last < first {
+            return Marks::default();
+        }
         let whole = |d: &u8| {
             let grown = size * 10_f64.powi(i32::from(*d));
             (grown - grown.round()).abs() < 1e-6 * grown
         };
         let decimals = (0..=9).find(whole).unwrap_or(9);
         let digits = 10_f64.powi(i32::from(decimals));
-        let (first, last) = ends(size);
         let mut values = Vec::new();
         let mut k = first;
         while k <= last {
-            // a product such as 3 x 0.1 carries a last digit that a label would show
-            values.push((k * size * digits).round() / digits);
+            // a product such as 3 x 0.1 carries a last digit that a label would show, and a zero its sign
+            values.push((k * size * digits).round() / digits + 0.0);
             k += 1.0;
         }
         Marks { values, decimals }

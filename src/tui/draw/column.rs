@@ -1,10 +1,12 @@
 //! The pool drawn with elevation up the side: gates, withdrawal zones and the cast line up across it.
 
+mod axes;
+mod below;
 mod curves;
 mod gates;
 mod layout;
+mod marks;
 mod pen;
-mod sides;
 #[cfg(test)]
 mod tests;
 mod zones;
@@ -66,7 +68,7 @@ pub struct GateMark {
     pub name: String,
     /// Centre-line, or the crest, m.
     pub centre_m: f64,
-    /// Top and bottom of the opening, m.
+    /// Top of the opening, m.
     pub top_m: f64,
     /// Bottom of the opening, m.
     pub bottom_m: f64,
@@ -142,15 +144,16 @@ pub struct Picture {
 /// Draws the picture.
 ///
 /// ```text
-///      ft gates      N3 S3  S4     T 50    60    70  F     units, lanes of the zones, temperature axis
-/// 1,468.0 ~~~~~~~~~~~~~~~~~~~~~~~~~~~+~~~~~+~~~~~+~~       water surface
-///   1,450 │ >N1 |S1  ⣿     ╕        │     ⠁O2   ⡇T  !      a flag at its row
-///         │          ⣿⣿⣿⣿⣿ <        │    ⠁   ⢀⠤⠒          a zone: velocity, extent, peak
-///   1,400 ║[>N3]>S3  ⣿     ┘  ⣿     │ thermocline ╌╌╌      ║ openings of the gates; [ ] the one chosen
-///         │                   ⣿⣿⣿⣿ <│
-/// 1,180.0 ══════════════════════════════════════════       bed
-///   > draws  | shut                O2 0   2   4   6  mg/L  oxygen axis
-///   1,395.0 ft  54.1 F  7.1 mg/L                           readout at the cursor, then the legend
+///      ft  gates               T 50    60    70   F   units, temperature axis
+/// 1,471.5┤~~~~~~~~~~~~~~~~~~~~~~~~┴~~~~~┴~~~~~┴~~~~   water surface
+///   1,450┤ |N1 |S1     N3 S3  │       ⢸O2    ⢸⡇T  !   a zone's gates; at the edge a flag at its row
+///        │             ⣷⣄ ┐   │╌ thermocline ╌╌╌╌     extent of the zone, ending free
+///   1,400╢[>N3]>S3     ⣿⣿⣷<   │  ┊  ⢀⡇  ⣀⠴⠚⠁          opening of the chosen gate; velocity of its zone, peak
+///        │             ⡟⠁ ┘   │  ┊⢀⠼⠒⠒⠊⠁          c   c where the water passes the threshold of the dotted line
+/// 1,180.0┤═════════════════════╤═════╤═════╤═══════   bed
+///                      O2 mg/L 0     5     10         oxygen axis
+/// 1,395.0 ft  54.1 F  7.1 mg/L                        readout at the cursor
+/// > draws  | shut  < peak  ┐ free end                 legend
 /// ```
 ///
 /// `┐ ┘` end a zone that density ends, `╕ ╛` one that the surface or the bed cuts; `<` marks its peak. Gates above
@@ -168,7 +171,11 @@ pub fn column(picture: &Picture, area: Rect, buf: &mut Buffer, look: Look) {
     gates::draw(picture, &layout, &mut pen);
     zones::draw(picture, &layout, &mut pen);
     curves::draw(picture, &layout, &mut pen);
-    sides::draw(picture, &layout, &mut pen);
+    axes::elevations(picture, &layout, &mut pen);
+    axes::values(picture, &layout, &mut pen);
+    marks::draw(picture, &layout, &mut pen);
+    below::cursor(picture, &layout, &mut pen);
+    below::legend(picture, &layout, &mut pen);
 }
 
 /// Elevation (m) in the middle of a row of the screen, where the picture in `area` shows water or air there.

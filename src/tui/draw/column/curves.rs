@@ -11,12 +11,12 @@ use super::{Picture, Water};
 /// Numbers of the curves in the dots.
 const TEMPERATURE: usize = 0;
 const OXYGEN: usize = 1;
+/// Rows from the end of a curve in which its letter may stand.
+const ROWS: usize = 3;
 
 pub(super) fn draw(picture: &Picture, layout: &Layout, pen: &mut Pen) {
     let area = layout.curves;
-    let letters = [["t", "o"], ["T", "O2"]];
-    for water in waters(picture, layout.wide) {
-        let own = std::ptr::eq(water, &picture.water);
+    for (own, water) in waters(picture, layout.wide) {
         let stroke = if own { [Stroke::Heavy, Stroke::Thin] } else { [Stroke::Dotted; 2] };
         let marks = if own { ["*", "o"] } else { [",", "."] };
         let mut dots = Dots::new(pen.grain(), usize::from(area.width), usize::from(area.height));
@@ -26,11 +26,7 @@ pub(super) fn draw(picture: &Picture, layout: &Layout, pen: &mut Pen) {
             dots.curve(*curve, stroke[*curve], points, scale, &layout.elevation);
         }
         pen.dots(&dots, area, |curve| (role(curve), marks[curve]));
-        if own {
-            letter_ends(layout, &lines, letters[1], pen);
-        } else {
-            letter_ends(layout, &lines, letters[0], pen);
-        }
+        letters(layout, &dots, if own { ["T", "O2"] } else { ["t", "o"] }, pen);
     }
 }
 
@@ -55,37 +51,43 @@ fn role(curve: usize) -> Role {
     if curve == OXYGEN { Role::Oxygen } else { Role::Temperature }
 }
 
-/// The letters of the curves beside their highest and lowest points.
-fn letter_ends(layout: &Layout, lines: &[Line], letters: [&str; 2], pen: &mut Pen) {
+/// The letters of the curves, beside their highest and lowest rows.
+fn letters(layout: &Layout, dots: &Dots, letters: [&str; 2], pen: &mut Pen) {
+    let rows = layout.curves.height;
     for curve in [TEMPERATURE, OXYGEN] {
-        let own = || lines.iter().filter(|l| l.0 == curve);
-        let shown =
-            |l: &Line| l.1.iter().copied().filter(|p| layout.row_inside(p.1).is_some()).collect::<Vec<_>>();
-        let points = || own().flat_map(shown);
-        let ends = [points().max_by(|a, b| a.1.total_cmp(&b.1)), points().min_by(|a, b| a.1.total_cmp(&b.1))];
-        let Some(scale) = own().map(|l| l.2).next() else { continue };
-        let mut rows = Vec::new();
-        for (value, elevation_m) in ends.into_iter().flatten() {
-            let row = layout.row(elevation_m);
-            let Some(cell) = scale.cell(value, usize::from(layout.curves.width)) else { continue };
-            let at = layout.curves.x + u16::try_from(cell).unwrap_or(0);
-            if !rows.contains(&row) {
-                rows.push(row);
-                beside(layout, at, row, letters[curve], role(curve), pen);
+        let drawn = |row: &u16| reach(layout, dots, curve, *row).is_some();
+        let (Some(top), Some(foot)) = ((0..rows).find(drawn), (0..rows).rev().find(drawn)) else { continue };
+        let inward = [(top..=foot).take(ROWS).collect::<Vec<_>>(), (top..=foot).rev().take(ROWS).collect()];
+        let ends = if foot - top < 2 * rows / 3 { &inward[..1] } else { &inward[..] };
+        for near in ends {
+            let places: Vec<(u16, u16)> =
+                near.iter().flat_map(|row| beside(layout, dots, curve, *row, letters[curve])).collect();
+            let free = |&&(x, y): &&(u16, u16)| (x..x + cells(letters[curve])).all(|x| pen.blank(x, y));
+            // over the curve itself where there is no room at all
+            let over =
+                near.first().and_then(|row| Some((reach(layout, dots, curve, *row)?.0, layout.top + row)));
+            if let Some((x, y)) = places.iter().find(free).copied().or(over) {
+                pen.text(x, y, cells(letters[curve]), letters[curve], role(curve));
             }
         }
     }
 }
 
-/// A letter in the nearest blank cells of the row; over the curve itself where there are none.
-fn beside(layout: &Layout, at: u16, row: u16, letter: &str, role: Role, pen: &mut Pen) {
-    let (left, right) = (layout.curves.left(), layout.curves.right());
-    let width = cells(letter);
-    let free = |x: &u16| (*x..*x + width).all(|x| x < right && pen.blank(x, row));
-    // a cell further right than left counts as near: the letter stands after its curve as a word does
-    let far = |x: &u16| if *x > at { 2 * (*x - at) - 1 } else { 2 * (at + 1 - (*x + width).min(at)) };
-    let place = (left..right).filter(free).min_by_key(far).filter(|x| far(x) <= 8);
-    pen.text(place.unwrap_or_else(|| at.min(right.saturating_sub(width))), row, width, letter, role);
+/// First and last column of a curve in a row of the water.
+fn reach(layout: &Layout, dots: &Dots, curve: usize, row: u16) -> Option<(u16, u16)> {
+    let own = |x: &u16| dots.spot(usize::from(*x), usize::from(row)).is_some_and(|s| s.curve == curve);
+    let x = layout.curves.x;
+    Some((x + (0..layout.curves.width).find(own)?, x + (0..layout.curves.width).rev().find(own)?))
+}
+
+/// Where a letter touches its curve in a row: after it, as a word stands, or before it. No other curve lies between.
+fn beside(layout: &Layout, dots: &Dots, curve: usize, row: u16, letter: &str) -> Vec<(u16, u16)> {
+    let Some((first, last)) = reach(layout, dots, curve, row) else { return Vec::new() };
+    let y = layout.top + row;
+    let before = first.checked_sub(cells(letter)).filter(|x| *x >= layout.curves.x);
+    // the first column of the marks may hold a letter
+    let after = Some(last + 1).filter(|x| x + cells(letter) <= layout.curves.right() + 1);
+    after.into_iter().chain(before).map(|x| (x, y)).collect()
 }
 
 /// Value at an elevation, linear between points that rise or fall in elevation; `None` beyond them.

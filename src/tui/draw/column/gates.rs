@@ -19,7 +19,8 @@ pub(super) struct Span {
     text: String,
 }
 
-/// Gates of each row, the chosen first, then those that draw.
+/// Gates of each row, the chosen first, then those that draw, then short names, so that
+/// as many as can be are named.
 fn rows(picture: &Picture, layout: &Layout) -> Vec<(u16, Vec<usize>)> {
     let mut order: Vec<usize> = (0..picture.gates.len()).collect();
     let gate = |i: &usize| &picture.gates[*i];
@@ -40,7 +41,7 @@ fn rows(picture: &Picture, layout: &Layout) -> Vec<(u16, Vec<usize>)> {
         }
     }
     for (_, gates) in &mut out {
-        gates.sort_by_key(|i| (!gate(i).chosen, gate(i).state != GateState::Drawing));
+        gates.sort_by_key(|i| (!gate(i).chosen, gate(i).state != GateState::Drawing, cells(&gate(i).name)));
     }
     out
 }
@@ -75,9 +76,9 @@ fn laid(picture: &Picture, layout: &Layout) -> (Vec<Span>, Vec<(u16, u16, usize)
         let mut x = layout.gates.x;
         for (k, &gate) in gates.iter().enumerate() {
             let left = gates.len() - k;
-            // room for "+2" is kept as long as others follow
-            let tail = if left > 1 { 3 } else { 0 };
-            let room = end.saturating_sub(x + 2 + tail);
+            // room for "+2" and a blank is kept as long as others follow
+            let tail = if left > 1 { 4 } else { 1 };
+            let room = end.saturating_sub(x + 1 + tail);
             let text = text(&picture.gates[gate], room.saturating_sub(1));
             let whole = cells(&harmless(&picture.gates[gate].name)) < room;
             if k > 0 && !whole {
@@ -112,6 +113,9 @@ pub(super) fn draw(picture: &Picture, layout: &Layout, pen: &mut Pen) {
         };
         let (first, last) = (span.columns.start, span.columns.end - 1);
         pen.text(first + 1, span.row, last - first - 1, &span.text, role);
+        for x in [first, last] {
+            pen.take(x, span.row);
+        }
         if gate.chosen {
             pen.text(first, span.row, 1, "[", Role::Strong);
             pen.text(last, span.row, 1, "]", Role::Strong);

@@ -6,7 +6,7 @@ use crate::plot::Scale;
 use crate::units::{Dimension, Unit, figure};
 
 use super::pen::cells;
-use super::{Picture, Water, gates};
+use super::{Picture, Water, below, gates};
 
 /// Below this nothing of use can be drawn.
 const LEAST: (u16, u16) = (26, 7);
@@ -14,8 +14,8 @@ const LEAST: (u16, u16) = (26, 7);
 const OXYGEN_AXIS: u16 = 10;
 /// Rows from which the readout has its own.
 const READOUT: u16 = 17;
-/// Rows from which there is a legend.
-const LEGEND: u16 = 24;
+/// Rows beyond which every fourth may be one of the legend.
+const LEGEND: u16 = 20;
 /// Columns from which surface and bed have decimals, overlays are drawn and the curves have a wall.
 const WIDE: u16 = 44;
 /// Columns from which the gates have notes.
@@ -23,7 +23,7 @@ const NOTES: u16 = 60;
 /// Columns of the curves that zones never take.
 const CURVES: u16 = 9;
 /// Columns of a zone at most and at least.
-const LANE: (u16, u16) = (10, 2);
+const LANE: (u16, u16) = (10, 3);
 /// Share of the water that the air above it may take, for gates above the surface.
 const AIR: f64 = 0.25;
 /// Least span of the temperature scale, C: less would draw the sensor's noise.
@@ -38,13 +38,15 @@ pub(super) struct Layout {
     pub(super) wall: u16,
     pub(super) gates: Rect,
     pub(super) notes: bool,
+    /// Lanes of the zones, and which of them each zone of the picture has.
     pub(super) lanes: Vec<Rect>,
+    pub(super) lane_of: Vec<usize>,
     pub(super) curves: Rect,
     pub(super) wide: bool,
     /// Rows of the oxygen axis, the readout and the legend.
     pub(super) oxygen_axis: Option<u16>,
     pub(super) readout: Option<u16>,
-    pub(super) legend: Option<u16>,
+    pub(super) legend: Rect,
     pub(super) elevation: Scale,
     pub(super) temperature: Option<Scale>,
     pub(super) oxygen: Option<Scale>,
@@ -58,17 +60,17 @@ impl Layout {
         let elevation = elevation_scale(picture)?;
         let wide = area.width >= WIDE;
         let mut rows = area.height - 3;
-        let mut below = area.bottom();
-        let mut take = |wanted: bool| {
-            wanted.then(|| {
-                below -= 1;
-                rows -= 1;
-                below
-            })
+        let mut foot = area.bottom();
+        let mut take = |number: u16| {
+            foot -= number;
+            rows -= number;
+            (number > 0).then_some(foot)
         };
-        let legend = take(area.height >= LEGEND);
-        let own_readout = take(area.height >= READOUT && picture.cursor_m.is_some());
-        let bottom = take(area.height >= OXYGEN_AXIS);
+        let legend_rows = below::legend_rows(picture, area.width).min(area.height.saturating_sub(LEGEND) / 4);
+        let legend_y = take(legend_rows).unwrap_or(area.bottom());
+        let legend = Rect { y: legend_y, height: legend_rows, ..area };
+        let own_readout = take(u16::from(area.height >= READOUT && picture.cursor_m.is_some()));
+        let bottom = take(u16::from(area.height >= OXYGEN_AXIS));
         // where the readout has no row of its own it takes that of the oxygen axis, whose number it tells
         let readout = own_readout.or(bottom.filter(|_| picture.cursor_m.is_some()));
         let oxygen_axis = bottom.filter(|row| readout != Some(*row));
@@ -79,7 +81,7 @@ impl Layout {
         let top = area.y + 2;
         let part = |x: u16, width: u16| Rect { x, y: top, width, height: rows };
         let notes = area.width >= NOTES;
-        let most = if notes { area.width / 3 } else { area.width / 4 };
+        let most = if notes { area.width / 3 } else { area.width * 3 / 10 + 1 };
         let mut layout = Self {
             area,
             top,
@@ -88,6 +90,7 @@ impl Layout {
             gates: part(wall + 1, most),
             notes,
             lanes: Vec::new(),
+            lane_of: Vec::new(),
             curves: part(wall, 0),
             wide,
             oxygen_axis,
@@ -101,13 +104,32 @@ impl Layout {
         let lanes_x = layout.gates.right();
         // a gap or wall before the curves, and the two columns of marks behind them
         let rest = area.right().saturating_sub(lanes_x + 3 + u16::from(wide));
-        let number = u16::try_from(picture.zones.len()).unwrap_or(u16::MAX);
+        layout.lane_of = layout.shared(picture);
+        let number =
+            layout.lane_of.iter().max().map_or(0, |lane| u16::try_from(lane + 1).unwrap_or(u16::MAX));
         let lane = (rest * 2 / 5 / number.max(1)).clamp(LANE.1, LANE.0);
         let shown = number.min(rest.saturating_sub(CURVES) / lane);
         layout.lanes = (0..shown).map(|k| part(lanes_x + k * lane, lane)).collect();
         let x = lanes_x + shown * lane + 1 + u16::from(wide);
         layout.curves = part(x, area.right().saturating_sub(x + 2));
         Some(layout)
+    }
+
+    /// A lane for each zone: zones that keep apart, a row for a name between them, share one.
+    fn shared(&self, picture: &Picture) -> Vec<usize> {
+        let mut lanes: Vec<Vec<(u16, u16)>> = Vec::new();
+        let mut out = Vec::new();
+        for zone in &picture.zones {
+            let (upper, lower) = (self.row(zone.upper_m), self.row(zone.lower_m));
+            let apart = |lane: &Vec<(u16, u16)>| lane.iter().all(|&(u, l)| upper > l + 1 || lower + 1 < u);
+            let lane = lanes.iter().position(apart).unwrap_or(lanes.len());
+            if lane == lanes.len() {
+                lanes.push(Vec::new());
+            }
+            lanes[lane].push((upper, lower));
+            out.push(lane);
+        }
+        out
     }
 
     /// Row of an elevation, the nearest outside.
@@ -138,6 +160,11 @@ impl Layout {
     pub(super) fn surface_row(&self, picture: &Picture) -> Option<u16> {
         (self.elevation.high() > picture.surface_m).then(|| self.row(picture.surface_m))
     }
+
+    /// Row of the bed where the picture reaches below it; without, the bed is the rule below the water.
+    pub(super) fn bed_row(&self, picture: &Picture) -> Option<u16> {
+        (self.elevation.low() < picture.bed_m).then(|| self.row(picture.bed_m))
+    }
 }
 
 fn elevation_scale(picture: &Picture) -> Option<Scale> {
@@ -160,7 +187,7 @@ fn temperature_scale(picture: &Picture, wide: bool) -> Option<Scale> {
     }
     let values = || {
         waters(picture, wide)
-            .flat_map(|w| &w.temperature)
+            .flat_map(|(_, w)| &w.temperature)
             .map(|t| t.1)
             .chain(picture.cold_c)
             .filter(|t| t.is_finite())
@@ -171,18 +198,25 @@ fn temperature_scale(picture: &Picture, wide: bool) -> Option<Scale> {
 }
 
 fn oxygen_scale(picture: &Picture, wide: bool) -> Option<Scale> {
+    // oxygen of other casts alone would be taken for this one's
+    if picture.water.oxygen.iter().all(Vec::is_empty) {
+        return None;
+    }
     if let Some((low, high)) = picture.fixed.oxygen_mg_l {
         return Scale::new(low, high);
     }
     let values = || {
-        waters(picture, wide).flat_map(|w| w.oxygen.iter().flatten()).map(|o| o.1).filter(|o| o.is_finite())
+        waters(picture, wide)
+            .flat_map(|(_, w)| w.oxygen.iter().flatten())
+            .map(|o| o.1)
+            .filter(|o| o.is_finite())
     };
     let (low, high) = (values().reduce(f64::min)?, values().reduce(f64::max)?);
     Some(Scale::round(low.min(0.0), high, 1.0, 8))
 }
 
-/// The casts drawn.
-pub(super) fn waters(picture: &Picture, wide: bool) -> impl Iterator<Item = &Water> {
+/// The casts drawn, and whether it is the picture's own, which comes last.
+pub(super) fn waters(picture: &Picture, wide: bool) -> impl Iterator<Item = (bool, &Water)> {
     let overlays = if wide { &picture.overlays[..] } else { &[] };
-    overlays.iter().chain([&picture.water])
+    overlays.iter().map(|w| (false, w)).chain([(true, &picture.water)])
 }

@@ -26,7 +26,8 @@ pub(super) struct Lines {
     pub(super) ends_cut: [&'static str; 2],
 }
 
-const DRAWN: Lines = Lines {
+/// Box drawing, for braille and half blocks.
+pub(super) const DRAWN: Lines = Lines {
     wall: "│",
     tick: "┤",
     opening: "║",
@@ -54,7 +55,7 @@ const TYPED: Lines = Lines {
     bed: "=",
     axis_tick: "+",
     bed_tick: "+",
-    level: ".",
+    level: "_",
     cursor: "-",
     threshold: ":",
     extent: "|",
@@ -67,13 +68,15 @@ pub(super) struct Pen<'a> {
     buf: &'a mut Buffer,
     area: Rect,
     look: Look,
+    /// Cells written, blanks of words included.
+    taken: Vec<bool>,
     pub(super) lines: &'static Lines,
 }
 
 impl<'a> Pen<'a> {
     pub(super) fn new(buf: &'a mut Buffer, area: Rect, look: Look) -> Self {
         let lines = if look.symbols == Symbols::Ascii { &TYPED } else { &DRAWN };
-        Self { buf, area, look, lines }
+        Self { buf, area, look, taken: vec![false; area.area() as usize], lines }
     }
 
     pub(super) fn clear(&mut self) {
@@ -98,7 +101,24 @@ impl<'a> Pen<'a> {
             return;
         }
         let width = width.min(self.area.right() - x);
-        self.buf.set_stringn(x, y, text, usize::from(width), self.look.style(role));
+        let (end, _) = self.buf.set_stringn(x, y, text, usize::from(width), self.look.style(role));
+        for x in x..end {
+            self.take(x, y);
+        }
+    }
+
+    /// Keeps a cell from what is drawn behind.
+    pub(super) fn take(&mut self, x: u16, y: u16) {
+        if let Some(taken) = self.place(x, y).and_then(|i| self.taken.get_mut(i)) {
+            *taken = true;
+        }
+    }
+
+    fn place(&self, x: u16, y: u16) -> Option<usize> {
+        let inside = self.area.contains((x, y).into());
+        inside.then(|| {
+            usize::from(y - self.area.y) * usize::from(self.area.width) + usize::from(x - self.area.x)
+        })
     }
 
     /// Text that ends before `end`, not beginning before the area.
@@ -107,9 +127,9 @@ impl<'a> Pen<'a> {
         self.text(x, y, end.saturating_sub(x), text, role);
     }
 
-    /// Whether nothing stands at a cell.
+    /// Whether nothing was written to a cell.
     pub(super) fn blank(&self, x: u16, y: u16) -> bool {
-        self.area.contains((x, y).into()) && self.buf[(x, y)].symbol() == " "
+        self.place(x, y).is_some_and(|i| !self.taken[i])
     }
 
     /// A character from `from` to before `to`, wherever nothing stands yet.

@@ -9,7 +9,12 @@ use super::pen::{Pen, cells};
 use super::{Picture, ZoneMark};
 
 pub(super) fn draw(picture: &Picture, layout: &Layout, pen: &mut Pen) {
-    for (zone, lane) in picture.zones.iter().zip(&layout.lanes) {
+    let mut hidden = 0;
+    for (zone, lane) in picture.zones.iter().zip(&layout.lane_of) {
+        let Some(lane) = layout.lanes.get(*lane) else {
+            hidden += 1;
+            continue;
+        };
         let mut shape = *lane;
         // the bracket, and a gap behind it where there is room
         shape.width = lane.width.saturating_sub(if lane.width > 4 { 2 } else { 1 });
@@ -29,11 +34,11 @@ pub(super) fn draw(picture: &Picture, layout: &Layout, pen: &mut Pen) {
             pen.text(bracket, row, 1, end, Role::Zone);
         }
         pen.text(bracket, layout.row(zone.peak_m), 1, "<", Role::Strong);
-        pen.text(lane.x, layout.area.y, lane.width, &label(zone, lane.width.saturating_sub(1)), Role::Zone);
+        // the row above the water is there for one that reaches the surface
+        pen.text(lane.x, upper - 1, lane.width, &label(zone, lane.width.saturating_sub(1)), Role::Zone);
     }
-    let hidden = picture.zones.len().saturating_sub(layout.lanes.len());
     if hidden > 0 {
-        let words = format!("+{hidden} zones");
+        let words = format!("+{hidden} zone{}", if hidden > 1 { "s" } else { "" });
         let x = layout.gates.right().saturating_sub(cells(&words));
         pen.text(x, layout.top + layout.rows, cells(&words), &words, Role::Warn);
     }
