@@ -31,8 +31,8 @@ pub(super) enum Command {
     Mix {
         #[command(flatten)]
         common: Common,
-        /// A gate and its flow, such as N1=30 or Sluice=5cfs, or a well and its total; repeat for each. Without
-        /// any setting, the one now.
+        /// A gate and its flow, such as N1=30 or Sluice=5cfs, with its opening where that is known (N1=30@50%), or a
+        /// well and its total; repeat for each. Without any setting, the one now.
         #[arg(long = "set", value_name = "GATE=FLOW")]
         set: Vec<String>,
         /// A gate and its opening, such as N1=50% or the name of a position; its well decides the flow.

@@ -32,15 +32,11 @@ pub use casts::{Cast, casts};
 pub use change::{Change, Move};
 pub use changed::Changed;
 pub use day::{BlockAnswer, DayAnswer};
-pub use mix::{MixAnswer, mix};
 pub use mix::{MixAnswer, mix, mix_given};
 pub use pool::{ColdWater, OutletState, PoolAnswer, cold_water, pool};
-pub use pool::{ColdWater, OutletState, PoolAnswer, pool};
 pub use setting::{Understood, given, now_setting, setting};
-pub use setting::{Understood, now_setting, setting};
 pub use since::{ColdChange, Since};
 pub use solve::{Solved, preferred_c, solve};
-pub use words::Word;
 pub use words::{ByFlow, Given, Word};
 
 /// Why a task gave no answer.

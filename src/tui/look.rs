@@ -114,9 +114,8 @@ impl Look {
     pub fn style(self, role: Role) -> Style {
         let plain = Style::new();
         let shape = match role {
-            Role::Strong | Role::Tried | Role::Outside => plain.add_modifier(Modifier::BOLD),
+            Role::Strong | Role::Tried | Role::Outside | Role::Key => plain.add_modifier(Modifier::BOLD),
             Role::Chosen | Role::Field => plain.add_modifier(Modifier::REVERSED),
-            Role::Key => plain.add_modifier(Modifier::BOLD),
             Role::Old => plain.add_modifier(Modifier::DIM),
             Role::Quiet if self.theme != Theme::Mono => plain.add_modifier(Modifier::DIM),
             _ => plain,
@@ -130,16 +129,13 @@ impl Look {
 
     fn colour(self, role: Role) -> Option<Color> {
         let (palette, ansi) = match role {
-            Role::Temperature => (ORANGE, Color::Yellow),
-            Role::Oxygen => (SKY, Color::Cyan),
+            Role::Temperature | Role::Warn | Role::Caution => (ORANGE, Color::Yellow),
+            Role::Oxygen | Role::Cold | Role::Key => (SKY, Color::Cyan),
             Role::Zone => (BLUE, Color::Blue),
-            Role::Cold => (SKY, Color::Cyan),
             Role::Range | Role::Inside => (GREEN, Color::Cyan),
             Role::Now => (PURPLE, Color::Magenta),
             Role::Tried => (YELLOW, Color::Yellow),
             Role::Outside => (VERMILLION, Color::Red),
-            Role::Warn | Role::Caution => (ORANGE, Color::Yellow),
-            Role::Key => (SKY, Color::Cyan),
             Role::Plain | Role::Quiet | Role::Strong | Role::Chosen | Role::Field | Role::Old => return None,
         };
         match self.theme {

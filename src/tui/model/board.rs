@@ -98,6 +98,7 @@ impl Cell {
     }
 
     /// The cell so many rows and columns away; the nearest there is.
+    #[must_use]
     pub fn moved(self, site: &Site, date: NaiveDate, down: isize, right: isize) -> Self {
         let rows = rows(site, date);
         let row = rows.iter().position(|r| *r == self.row()).unwrap_or(0);

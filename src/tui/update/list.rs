@@ -76,10 +76,8 @@ fn moved(at: usize, action: Action, count: usize) -> usize {
 fn over(model: &mut Model, action: Action) -> Vec<Effect> {
     let Some(over) = model.over.clone() else { return Vec::new() };
     match (over, action) {
-        (Over::Help(_) | Over::Settings(_) | Over::Order(_) | Over::Drill(_), Action::Back) => {
-            model.over = None
-        }
-        (Over::Help(_), Action::Enter) => model.over = None,
+        (Over::Help(_) | Over::Settings(_) | Over::Order(_) | Over::Drill(_), Action::Back)
+        | (Over::Help(_) | Over::Order(_) | Over::Drill(_), Action::Enter) => model.over = None,
         (Over::Help(at), _) => {
             let lines = super::super::view::help_lines();
             model.over = Some(Over::Help(moved(at, action, lines)));
@@ -93,7 +91,6 @@ fn over(model: &mut Model, action: Action) -> Vec<Effect> {
             return settled(model);
         }
         (Over::Settings(at), _) => model.over = Some(Over::Settings(moved(at, action, SETTINGS.len()))),
-        (Over::Order(_) | Over::Drill(_), Action::Enter) => model.over = None,
         (Over::Order(at), Action::More | Action::Less) => {
             let to = if action == Action::More { at.checked_sub(1) } else { Some(at + 1) };
             let Some(to) = to.filter(|to| *to < Criterion::NAMES.len()) else { return Vec::new() };

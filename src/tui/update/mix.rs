@@ -129,13 +129,11 @@ fn back_and_forth(model: &mut Model, back: bool) -> Vec<Effect> {
 
 fn solving(model: &mut Model) -> Vec<Effect> {
     let wanted = model.session().and_then(|s| Some((s.draft().tried()?.clone(), preferred_c(s.context())?)));
-    match wanted {
-        Some(wanted) => ask_mixes(model, Some(wanted)).into_iter().collect(),
-        None => {
-            complain(model, "no target of this date prefers a temperature");
-            Vec::new()
-        }
+    if let Some(wanted) = wanted {
+        return ask_mixes(model, Some(wanted)).into_iter().collect();
     }
+    complain(model, "no target of this date prefers a temperature");
+    Vec::new()
 }
 
 fn toggled(model: &mut Model) -> Vec<Effect> {

@@ -210,16 +210,12 @@ fn back(model: &mut Model) -> Vec<Effect> {
 }
 
 fn copy(model: &mut Model) -> Vec<Effect> {
-    match model.session().and_then(answer_text) {
-        Some(text) => {
-            say(model, "copied to the clipboard of the terminal, where it takes that");
-            vec![Effect::Copy(text)]
-        }
-        None => {
-            complain(model, "there is no answer to copy yet");
-            Vec::new()
-        }
+    if let Some(text) = model.session().and_then(answer_text) {
+        say(model, "copied to the clipboard of the terminal, where it takes that");
+        return vec![Effect::Copy(text)];
     }
+    complain(model, "there is no answer to copy yet");
+    Vec::new()
 }
 
 fn ticked(model: &mut Model, clock: DateTime<Utc>) -> Vec<Effect> {

@@ -106,7 +106,7 @@ pub(super) fn over(model: &Model, area: Rect, buf: &mut Buffer) -> Option<Positi
             list(model, "lost-gate drill: Space takes a gate out, Enter done", &lines, *at, area, buf);
             None
         }
-        Over::Field(field) => typed(model, field, area, buf),
+        Over::Field(field) => Some(typed(model, field, area, buf)),
     }
 }
 
@@ -168,7 +168,7 @@ fn settings(model: &Model, at: usize, area: Rect, buf: &mut Buffer) {
     list(model, "settings: Space changes, Esc closes", &lines, at, area, buf);
 }
 
-fn typed(model: &Model, field: &Field, area: Rect, buf: &mut Buffer) -> Option<Position> {
+fn typed(model: &Model, field: &Field, area: Rect, buf: &mut Buffer) -> Position {
     let title = match field.typed {
         Typed::Cell(cell) => super::mix::cell_words(model, cell),
         Typed::Colder => "volume colder than".into(),
@@ -190,7 +190,7 @@ fn typed(model: &Model, field: &Field, area: Rect, buf: &mut Buffer) -> Option<P
         None => put(buf, inside, 0, 1, "Enter sets it, Esc leaves it as it was", look.style(Role::Quiet)),
     };
     let column = u16::try_from(field.input.visual_cursor().saturating_sub(scroll)).unwrap_or(0);
-    Some(Position::new(inside.x + column.min(inside.width.saturating_sub(1)), inside.y))
+    Position::new(inside.x + column.min(inside.width.saturating_sub(1)), inside.y)
 }
 
 /// Draws the list of sites.
