@@ -7,7 +7,7 @@ use crate::tasks::{Context, Failure, Given, MixAnswer};
 
 use super::super::work::Anew;
 use super::Screen;
-use super::board::{Cell, rows};
+use super::board::{Cell, Row, rows};
 use super::draft::{Draft, History};
 
 /// Pool and settings as they were computed together.
@@ -90,9 +90,11 @@ impl Session {
     /// A site just opened: the setting now is tried first.
     pub fn begin(base: Arc<Context>) -> Self {
         let now = Given::now(base.site());
-        let cell = rows(base.site(), base.on.date_naive())
-            .first()
-            .map_or(Cell::Pool, |row| row.cells(base.site())[0]);
+        // what is open now is what is turned first
+        let rows = rows(base.site(), base.on.date_naive());
+        let opens = |row: &&Row| matches!(row, Row::Outlet(i) if base.site().now.iter().any(|n| n.0 == *i));
+        let row = rows.iter().find(opens).or(rows.first());
+        let cell = row.and_then(|row| row.cells(base.site()).last().copied()).unwrap_or(Cell::Pool);
         Self {
             history: History::begin(Draft::begin(now)),
             base,

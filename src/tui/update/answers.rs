@@ -133,7 +133,7 @@ fn take_solved(model: &mut Model, solved: Result<Solved, Failure>) -> Vec<Effect
     let Some((root, given)) = solved.roots.first() else {
         let [low, high] = solved.bracket_c;
         let words = format!(
-            "no split between {} and {} gives {}: they give {} to {}",
+            "no split between {} and {} gives {}: they give {} to {}; open a gate at another level",
             names[0],
             names[1],
             shown(solved.wanted_c),

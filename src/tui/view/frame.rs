@@ -18,7 +18,7 @@ use crate::report::caution_within;
 use crate::tasks::{Context, Freshness};
 use crate::units::{Dimension, System, show};
 
-use super::super::keys::hints;
+use super::super::keys::{Place, hints};
 use super::super::look::Role;
 use super::super::model::{Model, Screen, Session, Stage, Under};
 use super::super::update::places;
@@ -97,16 +97,29 @@ pub(super) fn draw(model: &Model, parts: &Parts, buf: &mut Buffer) {
     put(buf, parts.caution, 0, 0, words, look.style(Role::Caution));
 }
 
+/// Keys of the place at the left, those that work everywhere at the right, where they are found on every screen.
 fn keys(model: &Model, area: Rect, buf: &mut Buffer) {
+    let all = places(model);
+    let (here, everywhere): (Vec<Place>, Vec<Place>) = all.into_iter().partition(|p| *p != Place::Everywhere);
+    let common = hints(&everywhere);
+    let wide = |(key, word): &(&str, &str)| key.len() + word.len() + 3;
+    let reserved: usize = common.iter().map(wide).sum();
+    let mut end = usize::from(area.width).saturating_sub(reserved);
     let mut column = 0;
-    for (key, word) in hints(&places(model)) {
-        let room = usize::from(area.width.saturating_sub(column));
-        if key.len() + word.len() + 3 > room {
+    let hint = |(key, word): (&str, &str), column: u16, buf: &mut Buffer| {
+        let column = put(buf, area, column, 0, key, model.look.style(Role::Key));
+        let column = put(buf, area, column, 0, " ", model.look.style(Role::Quiet));
+        put(buf, area, column, 0, word, model.look.style(Role::Quiet)) + 2
+    };
+    for shown in hints(&here) {
+        if usize::from(column) + wide(&shown) > end {
             break;
         }
-        column = put(buf, area, column, 0, key, model.look.style(Role::Key));
-        column = put(buf, area, column, 0, " ", model.look.style(Role::Quiet));
-        column = put(buf, area, column, 0, word, model.look.style(Role::Quiet)) + 2;
+        column = hint(shown, column, buf);
+    }
+    for shown in common {
+        hint(shown, u16::try_from(end + 1).unwrap_or(u16::MAX), buf);
+        end += wide(&shown);
     }
 }
 
@@ -189,13 +202,21 @@ fn tabs(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
     put_right(buf, area, area.width, 0, &cut(&words, room), model.look.style(role));
 }
 
+fn is_long(model: &Model, under: &Under) -> bool {
+    (model.clock - under.since).num_milliseconds() >= AT_ONCE_MS
+}
+
+/// Whether what is shown of pool and mix has been waiting for the newer for longer than a moment.
+pub(super) fn is_old(model: &Model) -> bool {
+    model.quick.as_ref().is_some_and(|under| is_long(model, under))
+}
+
 /// What is being computed, or why the newest question has no answer.
 fn status(model: &Model, session: &Session) -> (String, Role) {
-    let long = |under: &&Under| (model.clock - under.since).num_milliseconds() >= AT_ONCE_MS;
-    if model.quick.as_ref().is_some_and(|u| long(&u)) {
+    if is_old(model) {
         return ("computing; what is shown is from before".into(), Role::Warn);
     }
-    if let Some(under) = model.long.as_ref().filter(long) {
+    if let Some(under) = model.long.as_ref().filter(|under| is_long(model, under)) {
         let before = if session.ranked.is_some() { "; what is shown is from before" } else { "" };
         return (format!("ranking {:.0} %{before}, Esc stops", 100.0 * under.done), Role::Warn);
     }
