@@ -94,7 +94,7 @@ fn on_terminal(asked: Asked) -> io::Result<()> {
 }
 
 /// What is done first: a list for a folder of sites, else the site.
-fn start(model: &mut Model) -> Vec<Effect> {
+pub fn start(model: &mut Model) -> Vec<Effect> {
     let named = model.asked.site.clone();
     let folder = named.filter(|named| !sites_in(Path::new(named)).is_empty());
     match folder {
@@ -179,8 +179,8 @@ impl Outside {
     }
 }
 
-/// The sites of a folder, then the demonstrations.
-fn sites(folder: Option<&str>) -> Vec<Choice> {
+/// The sites of a folder, of this one where none is named, then the demonstrations.
+pub fn sites(folder: Option<&str>) -> Vec<Choice> {
     let found = sites_in(Path::new(folder.unwrap_or("."))).into_iter().map(|f| Choice {
         name: f.name,
         named: f.path.display().to_string(),

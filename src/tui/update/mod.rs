@@ -244,7 +244,8 @@ fn complain(model: &mut Model, words: impl Into<String>) {
 fn ask(model: &mut Model, work: Work) -> Effect {
     model.generation += 1;
     let generation = model.generation;
-    *model.under(work.lane()) = Some(Under { generation, since: model.clock, done: 0.0 });
+    let opening = matches!(work, Work::Open(..));
+    *model.under(work.lane()) = Some(Under { generation, since: model.clock, done: 0.0, opening });
     Effect::Ask(generation, work)
 }
 
@@ -282,6 +283,10 @@ fn recompute(model: &mut Model, before: &Draft) -> Vec<Effect> {
 
 /// Asks for every try that has no answer yet.
 fn ask_mixes(model: &mut Model, solve: Option<(Given, f64)>) -> Option<Effect> {
+    // a question now would stop the opening; what is opened asks for every try by itself
+    if model.quick.as_ref().is_some_and(|under| under.opening) {
+        return None;
+    }
     let session = model.session()?;
     let draft = session.draft();
     let same = session.shown.as_ref().filter(|_| session.is_current());
