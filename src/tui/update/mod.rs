@@ -71,10 +71,10 @@ pub enum Effect {
 
 /// Asks for the site the command line names.
 pub fn begin(model: &mut Model) -> Vec<Effect> {
+    // watched first: what changes while it is read is noticed too
+    let watch = model.asked.site.clone().map(Effect::Watch);
     let work = Work::Open(model.asked.clone(), model.clock);
-    let mut effects = vec![ask(model, work)];
-    effects.extend(model.asked.site.clone().map(Effect::Watch));
-    effects
+    watch.into_iter().chain([ask(model, work)]).collect()
 }
 
 /// Opens another site.
