@@ -210,7 +210,7 @@ fn back(model: &mut Model) -> Vec<Effect> {
 }
 
 fn copy(model: &mut Model) -> Vec<Effect> {
-    if let Some(text) = model.session().and_then(answer_text) {
+    if let Some(text) = answer_text(model) {
         say(model, "copied to the clipboard of the terminal, where it takes that");
         return vec![Effect::Copy(text)];
     }
