@@ -64,8 +64,13 @@ fn on_terminal(asked: Asked) -> io::Result<()> {
         let send = send.clone();
         Worker::start(move |sent| _ = send.send(Arrived::Event(Event::Sent(sent))))
     };
-    let mut outside =
-        Outside { quick: worker(&send), long: worker(&send), watched: Arc::default(), send: send.clone() };
+    let mut outside = Outside {
+        quick: worker(&send),
+        long: worker(&send),
+        aside: worker(&send),
+        watched: Arc::default(),
+        send: send.clone(),
+    };
     watch(&outside.watched, send.clone());
     let paused = Arc::new(AtomicBool::new(false));
     listen(send, Arc::clone(&paused))?;
@@ -110,7 +115,7 @@ fn start(model: &mut Model) -> Vec<Effect> {
 /// Waits until something arrives that changes what is shown; what then is to be done. `None` at the end.
 fn wait(arrivals: &Receiver<Arrived>, model: &mut Model) -> Option<Vec<Effect>> {
     loop {
-        let busy = model.quick.is_some() || model.long.is_some();
+        let busy = model.quick.is_some() || model.long.is_some() || model.aside.is_some();
         let first = arrivals.recv_timeout(if busy { BUSY } else { IDLE });
         let mut effects = update(model, Event::Tick(Utc::now()));
         match first {
@@ -135,6 +140,7 @@ fn wait(arrivals: &Receiver<Arrived>, model: &mut Model) -> Option<Vec<Effect>> 
 struct Outside {
     quick: Worker,
     long: Worker,
+    aside: Worker,
     watched: Arc<Mutex<Option<String>>>,
     send: Sender<Arrived>,
 }
@@ -170,6 +176,7 @@ impl Outside {
         match lane {
             Lane::Quick => &self.quick,
             Lane::Long => &self.long,
+            Lane::Aside => &self.aside,
         }
     }
 

@@ -277,7 +277,21 @@ fn recompute(model: &mut Model, before: &Draft) -> Vec<Effect> {
     if ranks {
         effects.extend(ask_rank(model));
     }
+    if draft_of(model).is_some_and(|d| d.changed.on != before.changed.on) {
+        effects.extend(ask_casts(model));
+    }
     effects
+}
+
+fn draft_of(model: &Model) -> Option<&Draft> {
+    model.session().map(Session::draft)
+}
+
+/// Asks for the casts of the season, each as old as it is at the date.
+fn ask_casts(model: &mut Model) -> Option<Effect> {
+    let session = model.session()?;
+    let work = Work::Casts(session.base.clone(), session.draft().changed.clone());
+    Some(ask(model, work))
 }
 
 /// Asks for every try that has no answer yet.
