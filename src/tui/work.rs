@@ -13,8 +13,8 @@ use chrono::{DateTime, Utc};
 use crate::problem::Problem;
 use crate::tasks::rank::{RankAnswer, RankAsked, rank};
 use crate::tasks::{
-    Asked, Cast, Changed, Context, Failure, Given, MixAnswer, PoolAnswer, Solved, casts, mix_given, open, pool,
-    solve,
+    Asked, Cast, Changed, Context, Failure, Given, MixAnswer, PoolAnswer, Solved, casts, mix_given, open,
+    pool, solve,
 };
 use crate::units::System;
 

@@ -130,7 +130,11 @@ impl Session {
 
     /// The cast looked at instead of the one worked with.
     pub fn looked_at(&self) -> Option<&Cast> {
-        self.pool.cast.as_deref().and_then(|file| self.cast(file))
+        self.pool
+            .cast
+            .as_deref()
+            .filter(|file| *file != self.context().profile.file)
+            .and_then(|file| self.cast(file))
     }
 
     /// What the pool screen speaks of: the cast looked at, else the one worked with; `None` where that cast cannot be

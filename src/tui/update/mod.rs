@@ -195,8 +195,15 @@ fn to_screen(model: &mut Model, to: impl Fn(usize) -> usize) -> Vec<Effect> {
     Vec::new()
 }
 
-/// Back: long work is stopped first, then what was said is taken off.
+/// Back: what is looked at on the pool screen first, then long work is stopped, then what was said is taken off.
 fn back(model: &mut Model) -> Vec<Effect> {
+    if let Some(session) = model.session_mut().filter(|s| s.screen == Screen::Pool) {
+        let read = session.pool.cursor_m.take().is_some();
+        if read || session.pool.cast.take().is_some() {
+            model.message = None;
+            return Vec::new();
+        }
+    }
     if let Some(under) = model.long.take() {
         say(model, "stopped; what is shown was computed before");
         return vec![Effect::Stop(Lane::Long, under.generation + 1)];
@@ -204,7 +211,6 @@ fn back(model: &mut Model) -> Vec<Effect> {
     model.message = None;
     if let Some(session) = model.session_mut() {
         session.rank.rejected = None;
-        session.pool.cursor_m = None;
     }
     Vec::new()
 }

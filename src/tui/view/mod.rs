@@ -20,6 +20,7 @@ use crate::units::System;
 use super::model::{Cell, Model, Screen, Session, Stage};
 
 pub(super) use lists::help_lines;
+pub(super) use pool::{named as cast_named, scrolled as pool_scrolled, stepped_m as pool_stepped_m};
 
 /// Fewer cells than this and only the main figures are shown.
 const SMALL: (u16, u16) = (72, 20);
@@ -106,7 +107,7 @@ fn failure_words(failure: &Failure, system: System) -> String {
 pub(super) fn answer_text(session: &Session) -> Option<String> {
     let shown = session.shown.as_ref()?;
     match session.screen {
-        Screen::Pool => Some(text::pool(&shown.on.context, &shown.on.pool)),
+        Screen::Pool => session.pool_shown().map(|(context, answer)| text::pool(context, answer)),
         Screen::Mix => Some(text::mix(&shown.on.context, session.tried()?)),
         Screen::Rank => session.ranked.as_ref().map(|r| text::rank(&r.context, &r.answer)),
     }
