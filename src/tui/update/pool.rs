@@ -133,3 +133,6 @@ fn used(model: &mut Model) -> Vec<Effect> {
     );
     effects
 }
+
+#[cfg(test)]
+mod tests;

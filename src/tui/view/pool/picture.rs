@@ -1,8 +1,10 @@
 //! The picture of the cast shown, with the casts laid over it.
 
-use crate::intake;
+use chrono::NaiveDate;
+
+use crate::site::Site;
 use crate::tasks::{Cast, OutletState};
-use crate::units::{Dimension, System, figure};
+use crate::units::{Dimension, System, show};
 
 use super::super::super::draw::column::{Fixed, GateMark, GateState, Picture};
 use super::super::super::look::Role;
@@ -21,14 +23,12 @@ pub(super) fn picture(model: &Model, session: &Session) -> Option<Picture> {
     let gate = |state: &OutletState| {
         let o = &site.outlets[state.outlet];
         let part = o.open_part(1.0);
-        let out = site.limits.outages.iter().any(|l| l.outlet == state.outlet && l.covers(date));
         let gate_state = match (state.wet, state.kept) {
             (false, _) => GateState::Dry,
-            _ if out => GateState::Out,
+            _ if is_out(site, state.outlet, date) => GateState::Out,
             (true, Some(false)) => GateState::Short,
             (true, _) => GateState::Wet,
         };
-        let over = figure(intake::submergence_m(o, 1.0, profile.pool_m), system.unit(Dimension::Length), 1);
         GateMark {
             name: o.name.clone(),
             centre_m: part.centre_m,
@@ -36,7 +36,11 @@ pub(super) fn picture(model: &Model, session: &Session) -> Option<Picture> {
             bottom_m: part.top_m - part.height_m,
             state: gate_state,
             chosen: false,
-            note: if state.wet { over } else { String::new() },
+            note: match (state.wet, state.submergence_m) {
+                (false, _) => String::new(),
+                (true, over) if over < 0.0 => "top in air".into(),
+                (true, over) => show(over, Dimension::Length, system, 1),
+            },
         }
     };
     let overlays = laid_over(session).into_iter().filter_map(|c| c.profile());
@@ -50,6 +54,11 @@ pub(super) fn picture(model: &Model, session: &Session) -> Option<Picture> {
         fixed: Fixed { temperature_c: season_c(session, system), ..Fixed::default() },
         ..pool
     })
+}
+
+/// Whether an outlet is out of use on a date.
+pub(super) fn is_out(site: &Site, outlet: usize, date: NaiveDate) -> bool {
+    site.limits.outages.iter().any(|o| o.outlet == outlet && o.covers(date))
 }
 
 /// Casts laid over the one shown, in the order they were.

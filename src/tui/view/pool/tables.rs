@@ -1,85 +1,123 @@
-//! Outlets and cold water in columns.
+//! Outlets and cold water: in columns where they fit, else as sentences.
 
 use unicode_width::UnicodeWidthStr;
 
 use crate::problem::harmless;
 use crate::report::{fitted, text};
-use crate::site::Site;
-use crate::tasks::{ColdWater, OutletState};
+use crate::tasks::{ColdWater, Context, OutletState};
 use crate::units::{Dimension, System, figure};
 
 use super::super::super::look::Role;
+use super::picture::is_out;
 use super::{Line, filled};
 
-/// Cells of elevation and water above an outlet; its state follows.
-const FIGURES: [usize; 2] = [9, 7];
-/// Cells of the longest state, such as `SHORT of 10.0`.
-const STATE: usize = 14;
+/// Cells of the column of names from which it is one.
+const NAMES: usize = 6;
+
+/// Width of a column of figures, two blanks before it.
+fn column<'a>(heading: &str, figures: impl Iterator<Item = &'a String>) -> usize {
+    figures.map(String::len).max().unwrap_or(0).max(heading.len()) + 2
+}
+
+/// What is told of an outlet: elevation, water above its top, how that stands to what is asked for.
+struct Row {
+    name: String,
+    told: [String; 3],
+    role: Role,
+}
+
+fn row(context: &Context, s: &OutletState, system: System) -> Row {
+    let o = &context.site().outlets[s.outlet];
+    let length = |m: f64| figure(m, system.unit(Dimension::Length), 1);
+    let asked = length(o.min_submergence_m.unwrap_or(0.0));
+    let (state, role) = match (s.wet, s.kept) {
+        (false, _) => ("DRY".to_owned(), Role::Warn),
+        (true, Some(false)) => (format!("SHORT of {asked}"), Role::Outside),
+        (true, Some(true)) => (format!("keeps {asked}"), Role::Plain),
+        (true, None) => ("not checked".to_owned(), Role::Plain),
+    };
+    let out = if is_out(context.site(), s.outlet, context.on.date_naive()) { ", out" } else { "" };
+    let told = [length(o.centre_m), length(s.submergence_m), format!("{state}{out}")];
+    Row { name: harmless(&o.name), told, role }
+}
 
 /// The outlets from the highest down, those alike together.
-pub(super) fn outlets(site: &Site, outlets: &[OutletState], system: System, width: usize) -> Vec<Line> {
-    let length = system.unit(Dimension::Length);
-    let row = |s: &OutletState| {
-        let o = &site.outlets[s.outlet];
-        let asked = figure(o.min_submergence_m.unwrap_or(0.0), length, 1);
-        let (state, role) = match (s.wet, s.kept) {
-            (false, _) => ("DRY".to_owned(), Role::Warn),
-            (true, Some(false)) => (format!("SHORT of {asked}"), Role::Outside),
-            (true, Some(true)) => (format!("keeps {asked}"), Role::Plain),
-            (true, None) => ("not checked".to_owned(), Role::Plain),
-        };
-        let [z, over] = [o.centre_m, s.submergence_m].map(|m| figure(m, length, 1));
-        (format!("{z:>0$}{over:>1$}  {state}", FIGURES[0], FIGURES[1]), role)
+pub(super) fn outlets(context: &Context, outlets: &[OutletState], system: System, width: usize) -> Vec<Line> {
+    let rows: Vec<Row> = outlets.iter().map(|s| row(context, s, system)).collect();
+    let headings = ["centre", "above", "least"];
+    let wide = [0, 1, 2].map(|i| column(headings[i], rows.iter().map(|r| &r.told[i])));
+    let names = width.saturating_sub(wide.iter().sum());
+    let figures = |told: [&str; 3]| {
+        let [centre, above, state] = told;
+        format!("{centre:>0$}{above:>1$}  {state}", wide[0], wide[1])
     };
-    let names = width.saturating_sub(FIGURES[0] + FIGURES[1] + 2 + STATE);
-    let heading = format!("{0:names$}{1:>3$}{2:>4$}  least", "", "centre", "above", FIGURES[0], FIGURES[1]);
-    let mut out = vec![(heading, Role::Quiet)];
-    let rows: Vec<(&str, Line)> =
-        outlets.iter().map(|s| (site.outlets[s.outlet].name.as_str(), row(s))).collect();
-    for alike in rows.chunk_by(|a, b| a.1 == b.1) {
-        let (figures, role) = &alike[0].1;
-        let all = alike.iter().map(|r| harmless(r.0)).collect::<Vec<_>>().join(" ");
-        let mut lines = filled(&all, width, 1);
-        // names that are too long for their column stand above the figures
-        let last = match lines.pop() {
-            Some(last) if last.width() <= names && lines.is_empty() => last,
-            last => {
-                lines.extend(last);
-                String::new()
-            }
-        };
-        out.extend(lines.into_iter().map(|line| (line, Role::Plain)));
-        out.push((format!("{}{figures}", fitted(&last, names)), *role));
+    let mut out = Vec::new();
+    if names >= NAMES {
+        out.push((format!("{:names$}{}", "", figures(headings)), Role::Quiet));
+    }
+    for alike in rows.chunk_by(|a, b| a.told == b.told) {
+        let name = alike.iter().map(|r| r.name.as_str()).collect::<Vec<_>>().join(" ");
+        let Row { told: [centre, above, state], role, .. } = &alike[0];
+        if names < NAMES {
+            let words = format!("{name}: centre {centre}, water above {above}, {state}");
+            out.extend(filled(&words, width, 2).into_iter().map(|line| (line, *role)));
+            continue;
+        }
+        let mut told = figures([centre, above, state]);
+        if name.width() < names {
+            told = format!("{}{told}", fitted(&name, names));
+        } else {
+            // names too long for their column stand above the figures
+            out.extend(filled(&name, width, 1).into_iter().map(|line| (line, *role)));
+            told = format!("{:names$}{told}", "");
+        }
+        out.push((told, *role));
     }
     out
 }
 
-/// Volumes colder than each threshold; a figure for each meaning, its unit in the heading.
+/// Volumes colder than each threshold, and whether it was typed.
 pub(super) fn cold(volumes: &[(ColdWater, bool)], system: System, width: usize) -> Vec<Line> {
     if volumes.is_empty() {
         return vec![("no threshold in the site file; c types one".into(), Role::Plain)];
     }
-    let column = (width.saturating_sub(9) / 3).min(14);
-    let unit = if system == System::Us { system.unit(Dimension::Volume).symbol() } else { "hm3" };
-    let heading = |a: &str, b: &str, c: &str| format!("{unit:<9}{a:>column$}{b:>column$}{c:>column$}");
-    let beyond = if column > 11 { "unreachable" } else { "not" };
-    let mut out = vec![(heading("usable", beyond, "total"), Role::Quiet)];
     let degrees = system.unit(Dimension::Temperature);
-    for (c, typed) in volumes {
-        let bare = |m3: f64| {
-            let shown = text::volume(m3, system);
-            shown.split(' ').next().unwrap_or_default().to_owned()
+    let unit = text::volume(0.0, system).split(' ').nth(1).unwrap_or_default().to_owned();
+    let rows: Vec<([String; 4], Role)> = volumes
+        .iter()
+        .map(|(c, typed)| {
+            let bare = |m3: f64| text::volume(m3, system).split(' ').next().unwrap_or_default().to_owned();
+            let of = |m3: Option<f64>| m3.map_or_else(|| "none".to_owned(), bare);
+            let beyond = c.usable_m3.map_or(c.total_m3, |usable| c.total_m3 - usable);
+            let (mark, role) = if *typed { ("*", Role::Tried) } else { ("<", Role::Plain) };
+            let below = format!("{mark}{} {degrees}", figure(c.threshold_c, degrees, 1));
+            ([below, of(c.usable_m3), bare(beyond), bare(c.total_m3)], role)
+        })
+        .collect();
+    let headings = [unit.as_str(), "usable", "unreachable", "total"];
+    let wide = [0, 1, 2, 3].map(|i| column(headings[i], rows.iter().map(|r| &r.0[i])));
+    // one blank is enough between columns where room is short, and none before the first
+    let spare = width.saturating_sub(wide.iter().sum::<usize>().saturating_sub(5));
+    let mut out = Vec::new();
+    if wide.iter().sum::<usize>().saturating_sub(5) <= width {
+        let gap = spare.min(9) / 3;
+        let line = |told: [&str; 4]| {
+            let [below, usable, beyond, total] = told;
+            let at = [wide[0] - 2, wide[1] - 1 + gap, wide[2] - 1 + gap, wide[3] - 1 + gap];
+            format!("{below:<0$}{usable:>1$}{beyond:>2$}{total:>3$}", at[0], at[1], at[2], at[3])
         };
-        let of = |m3: Option<f64>| m3.map_or_else(|| "none".to_owned(), bare);
-        let (mark, role) = if *typed { ("*", Role::Tried) } else { ("", Role::Plain) };
-        let below = format!("<{} {degrees}{mark}", figure(c.threshold_c, degrees, 1));
-        let (usable, beyond) =
-            (of(c.usable_m3), of(c.usable_m3.map(|u| c.total_m3 - u).or(Some(c.total_m3))));
-        let total = bare(c.total_m3);
-        out.push((format!("{below:<9}{usable:>column$}{beyond:>column$}{total:>column$}"), role));
+        out.push((line(headings), Role::Quiet));
+        out.extend(rows.iter().map(|(told, role)| (line(told.each_ref().map(String::as_str)), *role)));
+    } else {
+        for ([below, usable, beyond, total], role) in &rows {
+            let words = format!("{below}: usable {usable}, unreachable {beyond}, total {total} {unit}");
+            out.extend(filled(&words, width, 2).into_iter().map(|line| (line, *role)));
+        }
     }
     if volumes.iter().any(|v| v.1) {
-        out.push(("* as typed with c".into(), Role::Quiet));
+        out.extend(
+            filled("* below the temperature typed with c", width, 2).into_iter().map(|l| (l, Role::Quiet)),
+        );
     }
     out
 }

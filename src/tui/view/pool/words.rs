@@ -20,13 +20,12 @@ pub(super) fn head(session: &Session, width: usize) -> Vec<Line> {
     let shown = looked.or_else(|| session.cast(&session.context().profile.file));
     let place = shown.and_then(|shown| {
         let casts = session.casts.as_ref()?;
-        Some(format!(" ({} of {})", casts.iter().position(|c| c.file == shown.file)? + 1, casts.len()))
+        Some(format!("cast {} of {}, ", casts.iter().position(|c| c.file == shown.file)? + 1, casts.len()))
     });
     let place = place.unwrap_or_default();
     match looked {
         Some(cast) => {
-            let words =
-                format!("looking at the cast of {}{place}, not the one worked with", named(session, cast));
+            let words = format!("looking at the cast of {}, not the one worked with", named(session, cast));
             say(&words, Role::Warn);
         }
         None => {
@@ -41,7 +40,7 @@ pub(super) fn head(session: &Session, width: usize) -> Vec<Line> {
                 Some(_) => ", chosen; not the newest",
                 None => "",
             };
-            say(&format!("cast of {taken}{place}, worked with{newest}"), Role::Strong);
+            say(&format!("cast of {taken}, worked with{newest}"), Role::Strong);
         }
     }
     if session.pool_shown().is_none() {
@@ -62,7 +61,7 @@ pub(super) fn head(session: &Session, width: usize) -> Vec<Line> {
             _ => String::new(),
         }
     });
-    say(&format!("{}{count}", age.unwrap_or_default()), role);
+    say(&format!("{place}{}{count}", age.unwrap_or_default()), role);
     out
 }
 
@@ -94,7 +93,7 @@ pub(super) fn lines(model: &Model, session: &Session, width: usize) -> Vec<Line>
         for line in text::layer_words(context, answer, system) {
             say(&mut out, &line, width, Role::Plain);
         }
-        heading(&mut out, "Colder water");
+        heading(&mut out, "Colder water", width);
         let mut volumes: Vec<_> = answer.cold.iter().map(|c| (*c, false)).collect();
         let typed = session.pool.colder_c.map(|c| (cold_water(context, answer, c), true));
         volumes.extend(typed);
@@ -103,7 +102,7 @@ pub(super) fn lines(model: &Model, session: &Session, width: usize) -> Vec<Line>
             Some(reach) => say(&mut out, &reach, width, Role::Quiet),
             None => say(&mut out, "! no outlet is usable under this pool", width, Role::Outside),
         }
-        heading(&mut out, "Against the cast before");
+        heading(&mut out, "Against the cast before", width);
         match text::since_words(context, answer, system) {
             Some(since) => {
                 say(&mut out, &since, width, Role::Plain);
@@ -116,12 +115,13 @@ pub(super) fn lines(model: &Model, session: &Session, width: usize) -> Vec<Line>
         heading(
             &mut out,
             &format!("Outlets, {}: centre, water above the top, least asked for", of(Dimension::Length)),
+            width,
         );
-        out.extend(tables::outlets(context.site(), &answer.outlets, system, width));
+        out.extend(tables::outlets(context, &answer.outlets, system, width));
     }
     let problems = problems(session);
     let profile = session.pool_shown().map(|(context, _)| &context.profile);
-    heading(&mut out, "Flags (!) and notes (-)");
+    heading(&mut out, "Flags (!) and notes (-)", width);
     if problems.is_empty() {
         say(&mut out, "none", width, Role::Plain);
     }
@@ -134,17 +134,17 @@ pub(super) fn lines(model: &Model, session: &Session, width: usize) -> Vec<Line>
 fn season(out: &mut Vec<Line>, session: &Session, system: System, width: usize) {
     match (&session.casts, &session.casts_wrong) {
         (_, Some(failure)) => {
-            heading(out, "Casts");
+            heading(out, "Casts", width);
             say(out, &format!("! not read: {}", failure_words(failure, system)), width, Role::Outside);
         }
         (None, None) => {
-            heading(out, "Casts");
+            heading(out, "Casts", width);
             say(out, "being read ...", width, Role::Quiet);
         }
         (Some(casts), None) => {
             let broken: Vec<&Cast> = casts.iter().filter(|c| c.pool.is_none()).collect();
             if !broken.is_empty() {
-                heading(out, "Casts that cannot be read");
+                heading(out, "Casts that cannot be read", width);
                 for cast in broken {
                     say(
                         out,
@@ -158,11 +158,11 @@ fn season(out: &mut Vec<Line>, session: &Session, system: System, width: usize) 
     }
 }
 
-fn heading(out: &mut Vec<Line>, words: &str) {
+fn heading(out: &mut Vec<Line>, words: &str, width: usize) {
     if !out.is_empty() {
         out.push((String::new(), Role::Plain));
     }
-    out.push((words.to_owned(), Role::Strong));
+    say(out, words, width, Role::Strong);
 }
 
 fn say(out: &mut Vec<Line>, text: &str, width: usize, role: Role) {
