@@ -94,15 +94,12 @@ fn laid(model: &mut Model) {
     let over = &mut session.pool.over;
     if let Some(at) = over.iter().position(|f| *f == file) {
         over.remove(at);
-        say(model, format!("the cast of {name} is no longer laid over"));
+        say(model, format!("{name} is no longer laid over"));
     } else if over.len() >= LAID_OVER {
         complain(model, format!("{LAID_OVER} casts are laid over; l on one of them takes it off"));
     } else {
         over.push(file);
-        say(
-            model,
-            format!("the cast of {name} is laid over the others: [ ] step on to see it, l takes it off"),
-        );
+        say(model, format!("{name} is laid over: [ ] step on to see it, l takes it off"));
     }
 }
 
@@ -127,10 +124,7 @@ fn used(model: &mut Model) -> Vec<Effect> {
         session.pool.cast = None;
         session.pool.scroll = 0;
     }
-    say(
-        model,
-        format!("pool, mix and rank now stand on the cast of {name} and its own pool; u takes it back"),
-    );
+    say(model, format!("pool, mix and rank stand on the cast of {name}; u takes it back"));
     effects
 }
 

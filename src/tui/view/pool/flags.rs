@@ -14,10 +14,10 @@ fn elevation_m(profile: &Profile, line: usize) -> Option<f64> {
     profile.samples.get(at).map(|s| s.elevation_m)
 }
 
-/// Elevation (m) and words of each flag of a row.
-pub(super) fn at_elevations(profile: &Profile, system: System) -> Vec<(f64, String)> {
+/// Elevation (m) and word of each flag of a row; the list tells the rest.
+pub(super) fn at_elevations(profile: &Profile) -> Vec<(f64, String)> {
     let flags = profile.flags.iter().filter(|p| p.weight == Weight::Flag);
-    flags.filter_map(|p| Some((elevation_m(profile, p.place.line?)?, p.sentence(system)))).collect()
+    flags.filter_map(|p| Some((elevation_m(profile, p.place.line?)?, p.kind.to_owned()))).collect()
 }
 
 /// Every flag and note, flags first; refusals where there are any come before them.
@@ -55,7 +55,13 @@ pub(super) fn counted(problems: &[Problem]) -> (String, Role) {
         let plural = if count == 1 { "" } else { "s" };
         (count > 0).then(|| format!("{count} {one}{plural}"))
     };
-    let flags = of(Weight::Flag, "flag");
+    let mut kinds: Vec<&str> = Vec::new();
+    for p in problems.iter().filter(|p| p.weight == Weight::Flag) {
+        if !kinds.contains(&p.kind) {
+            kinds.push(p.kind);
+        }
+    }
+    let flags = of(Weight::Flag, "flag").map(|flags| format!("{flags} ({})", kinds.join(", ")));
     let role = if flags.is_some() { Role::Warn } else { Role::Plain };
     match (flags, of(Weight::Note, "note")) {
         (None, None) => ("no flags".into(), role),

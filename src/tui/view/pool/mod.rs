@@ -32,6 +32,9 @@ const WIDEST: u16 = 90;
 /// Columns of the words at most: longer lines lose the eye.
 const WORDS: u16 = 100;
 
+/// Columns from which two stay blank before the words.
+const ROOMY: u16 = 100;
+
 /// A line with its meaning.
 type Line = (String, Role);
 
@@ -48,7 +51,9 @@ fn parts(session: &Session, area: Rect) -> Parts {
     let width = (area.width / 2 + 2).clamp(PICTURE, WIDEST).min(area.width);
     let legend = picture::legend(session, usize::from(width)).len();
     let legend = u16::try_from(legend).unwrap_or(u16::MAX).min(area.height / 4);
-    let x = area.x + (width + 1).min(area.width);
+    // the marks at the edge of the picture must not be read as marks of the words
+    let gap = if area.width >= ROOMY { 2 } else { 1 };
+    let x = area.x + (width + gap).min(area.width);
     let right = Rect { x, width: (area.right() - x).min(WORDS), ..area };
     let head = words::head(session, usize::from(right.width)).len();
     let head = u16::try_from(head).unwrap_or(u16::MAX).min(area.height / 2);

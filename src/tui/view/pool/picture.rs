@@ -49,7 +49,7 @@ pub(super) fn picture(model: &Model, session: &Session) -> Option<Picture> {
         overlays: overlays.map(water::water).collect(),
         cold_c: session.pool.colder_c.or(pool.cold_c),
         gates: answer.outlets.iter().map(gate).collect(),
-        flags: flags::at_elevations(profile, system),
+        flags: flags::at_elevations(profile),
         cursor_m: session.pool.cursor_m,
         fixed: Fixed { temperature_c: season_c(session, system), ..Fixed::default() },
         ..pool

@@ -7,6 +7,7 @@ use crate::report::{fitted, text};
 use crate::tasks::{ColdWater, Context, OutletState};
 use crate::units::{Dimension, System, figure};
 
+use super::super::super::draw::column::GateState;
 use super::super::super::look::Role;
 use super::picture::is_out;
 use super::{Line, filled};
@@ -24,6 +25,7 @@ struct Row {
     name: String,
     told: [String; 3],
     role: Role,
+    out: bool,
 }
 
 fn row(context: &Context, s: &OutletState, system: System) -> Row {
@@ -36,9 +38,13 @@ fn row(context: &Context, s: &OutletState, system: System) -> Row {
         (true, Some(true)) => (format!("keeps {asked}"), Role::Plain),
         (true, None) => ("not checked".to_owned(), Role::Plain),
     };
-    let out = if is_out(context.site(), s.outlet, context.on.date_naive()) { ", out" } else { "" };
-    let told = [length(o.centre_m), length(s.submergence_m), format!("{state}{out}")];
-    Row { name: harmless(&o.name), told, role }
+    let out = is_out(context.site(), s.outlet, context.on.date_naive());
+    let name = format!(
+        "{}{}",
+        if out { GateState::Out.sign().to_string() } else { String::new() },
+        harmless(&o.name)
+    );
+    Row { name, told: [length(o.centre_m), length(s.submergence_m), state], role, out }
 }
 
 /// The outlets from the highest down, those alike together.
@@ -72,6 +78,9 @@ pub(super) fn outlets(context: &Context, outlets: &[OutletState], system: System
             told = format!("{:names$}{told}", "");
         }
         out.push((told, *role));
+    }
+    if rows.iter().any(|r| r.out) {
+        out.push((format!("{} out of use on the date", GateState::Out.sign()), Role::Quiet));
     }
     out
 }
