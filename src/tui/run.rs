@@ -65,8 +65,13 @@ fn on_terminal(asked: Asked) -> io::Result<()> {
         let send = send.clone();
         Worker::start(move |sent| _ = send.send(Arrived::Event(Event::Sent(sent))))
     };
-    let mut outside =
-        Outside { quick: worker(&send), long: worker(&send), watched: Arc::default(), send: send.clone() };
+    let mut outside = Outside {
+        quick: worker(&send),
+        long: worker(&send),
+        aside: worker(&send),
+        watched: Arc::default(),
+        send: send.clone(),
+    };
     watch(&outside.watched, send.clone());
     let paused = Arc::new(AtomicBool::new(false));
     let end = signals()?;
@@ -116,7 +121,7 @@ fn wait(arrivals: &Receiver<Arrived>, model: &mut Model, end: &AtomicBool) -> Op
         if end.load(Ordering::Relaxed) || !terminal::is_there() {
             return None;
         }
-        let busy = model.quick.is_some() || model.long.is_some();
+        let busy = model.quick.is_some() || model.long.is_some() || model.aside.is_some();
         let first = arrivals.recv_timeout(if busy { BUSY } else { IDLE });
         let mut effects = update(model, Event::Tick(Utc::now()));
         match first {
@@ -141,6 +146,7 @@ fn wait(arrivals: &Receiver<Arrived>, model: &mut Model, end: &AtomicBool) -> Op
 struct Outside {
     quick: Worker,
     long: Worker,
+    aside: Worker,
     watched: Arc<Mutex<Option<String>>>,
     send: Sender<Arrived>,
 }
@@ -176,6 +182,7 @@ impl Outside {
         match lane {
             Lane::Quick => &self.quick,
             Lane::Long => &self.long,
+            Lane::Aside => &self.aside,
         }
     }
 

@@ -20,6 +20,7 @@ use crate::units::System;
 use super::model::{Cell, Model, Screen, Stage};
 
 pub(super) use lists::help_lines;
+pub(super) use pool::{named as cast_named, scrolled as pool_scrolled, stepped_m as pool_stepped_m};
 
 /// Fewer cells than this and only the main figures are shown.
 const SMALL: (u16, u16) = (72, 20);
@@ -113,7 +114,7 @@ pub(super) fn answer_text(model: &Model) -> Option<String> {
     };
     let context = in_units(&shown.on.context);
     match session.screen {
-        Screen::Pool => Some(text::pool(&context, &shown.on.pool)),
+        Screen::Pool => session.pool_shown().map(|(context, answer)| text::pool(&in_units(context), answer)),
         Screen::Mix => Some(text::mix(&context, session.tried()?)),
         Screen::Rank => session.ranked.as_ref().map(|r| text::rank(&in_units(&r.context), &r.answer)),
     }
