@@ -79,7 +79,7 @@ impl Field {
         match self.typed {
             Typed::NewSite if text.is_empty() => Err("type the name of a folder".into()),
             Typed::NewSite => Ok(Value::Words(text.to_owned())),
-            Typed::Colder => number(Dimension::Temperature).map(|v| Value::Number(Some(v))),
+            Typed::Colder => bound(Dimension::Temperature),
             Typed::Release => match number(Dimension::Flow)? {
                 flow if flow > 0.0 => Ok(Value::Number(Some(flow))),
                 _ => Err("give a flow above zero".into()),

@@ -12,6 +12,7 @@
 
 use ratatui::buffer::Buffer;
 use ratatui::layout::{Position, Rect};
+use unicode_width::UnicodeWidthStr;
 
 use crate::problem::harmless;
 use crate::report::caution_within;
@@ -143,15 +144,26 @@ fn head(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
     let column = put(buf, area, 0, 0, &cut(&harmless(&site.name), room), look.style(Role::Strong));
     put(buf, area, column, 0, mark, look.style(Role::Warn));
     let mut column = 0;
-    for (words, role) in facts(session, context, model.system(), wide) {
+    let cells = |facts: &[(String, Role)]| facts.iter().map(|f| f.0.width() + 1).sum::<usize>();
+    let facts = [true, false]
+        .map(|hour| facts(session, context, model.system(), (wide, hour)))
+        .into_iter()
+        .reduce(|long, short| if cells(&long) > usize::from(area.width) + 1 { short } else { long });
+    for (words, role) in facts.unwrap_or_default() {
         column = put(buf, area, column, 1, &words, look.style(role)) + 1;
     }
 }
 
-/// Pool, cast, age, badge, date: in words with the role of each.
-fn facts(session: &Session, context: &Context, system: System, wide: bool) -> Vec<(String, Role)> {
+/// Pool, cast, age, badge, date: in words with the role of each; the hours of the cast and the date where asked for.
+fn facts(
+    session: &Session,
+    context: &Context,
+    system: System,
+    (wide, to_the_hour): (bool, bool),
+) -> Vec<(String, Role)> {
     let site = context.site();
-    let hour = if wide { "%Y-%m-%d %H:%M" } else { "%Y-%m-%d" };
+    let day = "%Y-%m-%d";
+    let hour = if wide && to_the_hour { "%Y-%m-%d %H:%M" } else { day };
     let pool = show(context.profile.pool_m, Dimension::Length, system, 1);
     let badge = Freshness::of(site, context.age_days);
     let taken = context.profile.taken.map_or_else(
@@ -168,10 +180,14 @@ fn facts(session: &Session, context: &Context, system: System, wide: bool) -> Ve
     let edited = |is: bool| if is { " (tried)" } else { "" };
     vec![
         (format!("pool {pool}{}", edited(changed.pool_m.is_some())), Role::Plain),
-        (format!("| {taken}{age}"), Role::Plain),
+        (format!("| {taken}{}{age}", edited(changed.cast.is_some())), Role::Plain),
         badge,
         (
-            format!("| for {}{}", context.on.format("%Y-%m-%d %H:%M"), edited(changed.on.is_some())),
+            format!(
+                "| for {}{}",
+                context.on.format(if to_the_hour { "%Y-%m-%d %H:%M" } else { day }),
+                edited(changed.on.is_some())
+            ),
             Role::Plain,
         ),
     ]
