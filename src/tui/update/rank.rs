@@ -182,9 +182,13 @@ fn take(model: &mut Model) -> Vec<Effect> {
 /// Of a day of several parts only one can be tried: which.
 fn part_words(context: &Context, mix: &Mix) -> String {
     let blocks = &context.site().blocks;
-    let longest = (0..mix.parts.len()).rev().max_by(|&a, &b| mix.parts[a].share.total_cmp(&mix.parts[b].share));
+    let longest =
+        (0..mix.parts.len()).rev().max_by(|&a, &b| mix.parts[a].share.total_cmp(&mix.parts[b].share));
     match longest.and_then(|i| blocks.get(i)).filter(|_| mix.parts.len() > 1) {
         Some(block) => format!(", its block {},", harmless(&block.name)),
         None => String::new(),
     }
 }
+
+#[cfg(test)]
+mod tests;

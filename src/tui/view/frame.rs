@@ -204,8 +204,10 @@ fn status(model: &Model, session: &Session) -> (String, Role) {
     }
     let without = &session.draft().without;
     if !without.is_empty() {
-        let names: Vec<String> =
-            without.iter().filter_map(|&o| Some(harmless(&session.base.site().outlets.get(o)?.name))).collect();
+        let names: Vec<String> = without
+            .iter()
+            .filter_map(|&o| Some(harmless(&session.base.site().outlets.get(o)?.name)))
+            .collect();
         return (format!("! drill without {}", names.join(", ")), Role::Warn);
     }
     (String::new(), Role::Plain)

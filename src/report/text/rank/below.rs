@@ -5,7 +5,9 @@ use std::fmt::Write as _;
 use crate::mix::Gate;
 use crate::problem::harmless;
 use crate::tasks::Context;
-use crate::tasks::rank::{Least, Lost, Part, Pocket, PreferredSplit, RankAnswer, Root, Shown, ShownPart, Trade};
+use crate::tasks::rank::{
+    Least, Lost, Part, Pocket, PreferredSplit, RankAnswer, Root, Shown, ShownPart, Trade,
+};
 use crate::units::{Dimension, System, figure, in_system};
 
 use super::{block_name, flags, flow, labelled, oxygen, temperature};

@@ -101,9 +101,7 @@ fn in_hours(hours: f64) -> String {
 fn told(context: &Context, whose: &str, shown: &Shown, system: System) -> Vec<String> {
     let broken = shown.limits.iter().filter(|c| c.broken());
     broken
-        .map(|c| {
-            format!("! {whose} misses {}", harmless(&in_system(&c.words(context.site()), system)))
-        })
+        .map(|c| format!("! {whose} misses {}", harmless(&in_system(&c.words(context.site()), system))))
         .collect()
 }
 

@@ -106,7 +106,8 @@ fn asked(context: &Context, answer: &RankAnswer, system: System) -> String {
 /// Names of the gates left out.
 pub fn without(context: &Context, answer: &RankAnswer) -> String {
     let outlets = &context.site().outlets;
-    let names: Vec<&str> = answer.without.iter().filter_map(|&o| Some(outlets.get(o)?.name.as_str())).collect();
+    let names: Vec<&str> =
+        answer.without.iter().filter_map(|&o| Some(outlets.get(o)?.name.as_str())).collect();
     harmless(&names.join(", "))
 }
 

@@ -7,7 +7,7 @@ use crate::report::text::rank;
 
 use super::super::super::look::Role;
 use super::super::lists::first_line;
-use super::super::write::{put, row_style};
+use super::super::write::{cut, put, row_style};
 use super::Screen;
 
 /// Columns of the mark before a row.
@@ -75,7 +75,7 @@ pub(super) fn draw(screen: &Screen, area: Rect, buf: &mut Buffer) {
             put(buf, area, 0, row, ">", look.style(Role::Strong));
             marked = true;
         }
-        put(buf, area, 2, row, &words, look.style(role));
+        put(buf, area, 2, row, &cut(&words, usize::from(area.width).saturating_sub(MARK)), look.style(role));
         if chosen {
             row_style(buf, area, row, look.style(Role::Chosen));
         }

@@ -22,7 +22,7 @@ use super::super::draw::trade::{mix_at, trade};
 use super::super::look::Role;
 use super::super::model::{Model, Page, Ranked, Session};
 use super::Hit;
-use super::write::{put, put_right, wrapped};
+use super::write::{cut, put, put_right, wrapped};
 
 /// Least rows of what is said of the mix chosen, where the screen has them: the trade curve fits in.
 const BELOW: u16 = 8;
@@ -85,7 +85,14 @@ pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffe
     if last > 0 && parts.said.height > 0 {
         let below = last - from;
         let words = if below > 0 { format!(" {below} more, PgDn ") } else { " PgUp ".to_owned() };
-        put_right(buf, parts.said, parts.said.width, parts.said.height - 1, &words, model.look.style(Role::Key));
+        put_right(
+            buf,
+            parts.said,
+            parts.said.width,
+            parts.said.height - 1,
+            &words,
+            model.look.style(Role::Key),
+        );
     }
     if parts.trade.width > 0 {
         trade(&trade::picture(&screen), parts.trade, buf, model.look);
@@ -103,6 +110,16 @@ pub(super) fn hit(model: &Model, session: &Session, area: Rect, at: Position) ->
         return mix_at(&trade::picture(&screen), parts.trade, at.x, at.y).map(Hit::Mix);
     }
     None
+}
+
+/// The main figures, where the window is small: warnings, the mix chosen.
+pub(super) fn in_short(model: &Model, session: &Session, width: usize) -> Lines {
+    let Some(screen) = screen(model, session) else {
+        return head::without_ranking(model, session, width);
+    };
+    let mut out = head::alone(&screen, width);
+    out.extend(said::lines(&screen, width));
+    out
 }
 
 /// The furthest that what scrolls can be scrolled.
@@ -130,7 +147,7 @@ fn scrolled(screen: &Screen, area: Rect) -> Lines {
 
 fn write(lines: &Lines, area: Rect, from: usize, model: &Model, buf: &mut Buffer) {
     for (row, (line, role)) in (0..area.height).zip(lines.iter().skip(from)) {
-        put(buf, area, 0, row, line, model.look.style(*role));
+        put(buf, area, 0, row, &cut(line, usize::from(area.width)), model.look.style(*role));
     }
 }
 

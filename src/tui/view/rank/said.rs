@@ -45,8 +45,10 @@ pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
     for why in &said.why {
         say(&mut out, &format!("- {why}"), width, 2, Role::Plain);
     }
-    let words = rank::not_checked(context, shown)
-        .map_or_else(|| "every limit of the site file is checked".to_owned(), |w| format!("not checked: {w}"));
+    let words = rank::not_checked(context, shown).map_or_else(
+        || "every limit of the site file is checked".to_owned(),
+        |w| format!("not checked: {w}"),
+    );
     say(&mut out, &words, width, 2, Role::Plain);
     out
 }

@@ -13,14 +13,12 @@ pub(super) fn picture(screen: &Screen) -> TradePicture {
     let site: &Site = context.site();
     let date = context.on.date_naive();
     let valid: Vec<&Target> = site.targets.iter().filter(|t| t.span.contains(date)).collect();
-    let point = |shown: &Shown| TradePoint {
-        temperature_c: shown.temperature_c,
-        oxygen_mg_l: shown.oxygen_mg_l,
-    };
-    let unbeaten = answer.trade.iter().map(|t| TradePoint {
-        temperature_c: t.temperature_c,
-        oxygen_mg_l: t.oxygen_mg_l,
-    });
+    let point =
+        |shown: &Shown| TradePoint { temperature_c: shown.temperature_c, oxygen_mg_l: shown.oxygen_mg_l };
+    let unbeaten = answer
+        .trade
+        .iter()
+        .map(|t| TradePoint { temperature_c: t.temperature_c, oxygen_mg_l: t.oxygen_mg_l });
     TradePicture {
         system: screen.model.system(),
         mixes: answer.mixes.iter().map(point).collect(),
