@@ -85,6 +85,10 @@ pub enum Action {
     Order,
     /// Type the release.
     Release,
+    /// The answers beyond the list.
+    Others,
+    /// Rank again after it was stopped.
+    Again,
     /// Begin a new site.
     NewSite,
 }
@@ -223,14 +227,30 @@ pub const TABLE: &[Binding] = &[
     on(P::Mix, Char('z'), "z", "", "begin again from what is set now", A::Reset),
     on(P::Mix, KeyCode::PageUp, "PgUp PgDn", "", "scroll what is said of the mix", A::PageUp),
     on(P::Mix, KeyCode::PageDown, "", "", "", A::PageDown),
-    on(P::Rank, KeyCode::Up, "Up Down", "choose", "choose a mix", A::Up),
+    on(P::Rank, KeyCode::Up, "Up Down", "", "choose a mix; scroll what is rejected", A::Up),
     on(P::Rank, KeyCode::Down, "", "", "", A::Down),
     on(P::Rank, KeyCode::Enter, "Enter", "take", "take the mix to the mix screen", A::Enter),
     on(P::Rank, Char('x'), "x", "rejected", "what is rejected, and by how much; and back", A::Rejected),
-    on(P::Rank, Char('l'), "l", "lost gate", "lost-gate drill: rank without gates you choose", A::Drill),
-    on(P::Rank, Char('c'), "c", "criteria", "order the criteria", A::Order),
+    on(
+        P::Rank,
+        Char('m'),
+        "m",
+        "more",
+        "exact split, least release, more release, lost gates; and back",
+        A::Others,
+    ),
+    on(
+        P::Rank,
+        Char('l'),
+        "l",
+        "drill",
+        "lost-gate drill: rank without gates you choose; Esc ends it",
+        A::Drill,
+    ),
+    on(P::Rank, Char('c'), "c", "order", "order the criteria", A::Order),
     on(P::Rank, Char('t'), "t", "release", "type the total release", A::Release),
-    on(P::Rank, KeyCode::PageUp, "PgUp PgDn", "", "a page of the list", A::PageUp),
+    on(P::Rank, Char('r'), "r", "", "rank again after it was stopped", A::Again),
+    on(P::Rank, KeyCode::PageUp, "PgUp PgDn", "", "scroll what is said of the mix", A::PageUp),
     on(P::Rank, KeyCode::PageDown, "", "", "", A::PageDown),
     on(P::Rank, KeyCode::Home, "Home End", "", "the first, the last", A::First),
     on(P::Rank, KeyCode::End, "", "", "", A::Last),

@@ -13,14 +13,14 @@ use super::flow;
 
 /// Each open gate with its opening, by name; an outlet that passes any flow with its flow, or one for each part of
 /// the day, in the unit of the heading.
-pub fn openings(context: &Context, shown: &Shown) -> Vec<String> {
+pub fn openings(context: &Context, shown: &Shown, system: System) -> Vec<String> {
     let parts: Vec<&[Gate]> = shown.parts.iter().map(|p| p.setting.gates.as_slice()).collect();
-    named(context, &parts)
+    named(context, &parts, system)
 }
 
 /// The same of gates alone.
-pub(super) fn named(context: &Context, parts: &[&[Gate]]) -> Vec<String> {
-    let (site, unit) = (context.site(), context.system.unit(Dimension::Flow));
+pub(super) fn named(context: &Context, parts: &[&[Gate]], system: System) -> Vec<String> {
+    let (site, unit) = (context.site(), system.unit(Dimension::Flow));
     let mut gates: Vec<(&Outlet, &Gate)> = parts
         .first()
         .into_iter()
@@ -32,7 +32,7 @@ pub(super) fn named(context: &Context, parts: &[&[Gate]]) -> Vec<String> {
         let of = |part: &&[Gate]| {
             part.iter()
                 .filter(|g| g.outlet == outlet)
-                .map(|g| figure(g.flow_m3s, unit, digits(context)))
+                .map(|g| figure(g.flow_m3s, unit, u8::from(system == System::Si)))
                 .collect()
         };
         let mut flows: Vec<String> = parts.iter().map(of).collect();
@@ -52,24 +52,19 @@ pub(super) fn named(context: &Context, parts: &[&[Gate]]) -> Vec<String> {
     gates.iter().map(one).collect()
 }
 
-/// Decimals of a flow without its unit.
-fn digits(context: &Context) -> u8 {
-    u8::from(context.system == System::Si)
-}
-
 fn opening(outlet: &Outlet, opening: f64) -> String {
     outlet.opening_name(opening).replace(" %", "%")
 }
 
 /// What to set in a part of the day: each well's total with its open gates, and each outlet on none.
-pub fn instruction(context: &Context, part: &ShownPart) -> String {
-    let (site, system) = (context.site(), context.system);
+pub fn instruction(context: &Context, part: &ShownPart, system: System) -> String {
+    let site = context.site();
     let gates = &part.setting.gates;
     let mut out: Vec<String> = Vec::new();
     for state in part.setting.wells.iter().filter(|w| !w.given) {
         let on: Vec<Gate> =
             gates.iter().filter(|g| site.outlets[g.outlet].well == Some(state.well)).copied().collect();
-        let open = named(context, &[&on]).join(", ");
+        let open = named(context, &[&on], system).join(", ");
         let name = harmless(&site.wells[state.well].name);
         out.push(format!("{name} {} ({open})", flow(state.flow_m3s, system)));
     }

@@ -2,7 +2,7 @@
 
 use std::fmt::Write as _;
 
-use crate::mix::{Drawn, Gate, Mix, Setting, TargetStanding};
+use crate::mix::{Drawn, Gate, Mix, Setting, Spread, TargetStanding};
 use crate::problem::harmless;
 use crate::site::{Outlet, Site};
 use crate::target::{Standing, Target};
@@ -125,6 +125,15 @@ fn wells(site: &Site, setting: &Setting, system: System) -> String {
 
 /// Temperature and oxygen of a release with their bands: `54.6 F (53.5 to 56.1), oxygen 7.1 mg/L (6.3 to 7.9)`.
 pub fn release_line(mix: &Mix, system: System) -> String {
+    release_words((mix.release.temperature_c, mix.release.oxygen_mg_l), &mix.spread, system)
+}
+
+/// The same of temperature (C), oxygen (mg/L) and the perturbed cases.
+pub fn release_words(
+    (temperature_c, oxygen_mg_l): (f64, Option<f64>),
+    spread: &Spread,
+    system: System,
+) -> String {
     let unit = system.unit(Dimension::Temperature);
     let ends = |band: Option<(f64, f64)>, digits: &dyn Fn(f64) -> String| {
         band.map_or_else(
@@ -134,12 +143,12 @@ pub fn release_line(mix: &Mix, system: System) -> String {
     };
     let mut out = format!(
         "{} ({}), oxygen {}",
-        temperature(mix.release.temperature_c, system),
-        ends(mix.spread.band_c(), &|c| figure(c, unit, 1)),
-        oxygen(mix.release.oxygen_mg_l)
+        temperature(temperature_c, system),
+        ends(spread.band_c(), &|c| figure(c, unit, 1)),
+        oxygen(oxygen_mg_l)
     );
-    if mix.release.oxygen_mg_l.is_some() {
-        let _ = write!(out, " ({})", ends(mix.spread.band_oxygen_mg_l(), &|o| format!("{o:.1}")));
+    if oxygen_mg_l.is_some() {
+        let _ = write!(out, " ({})", ends(spread.band_oxygen_mg_l(), &|o| format!("{o:.1}")));
     }
     out
 }
@@ -153,6 +162,12 @@ fn against_now(site: &Site, now: &Setting, was: &Mix, tried: &Mix, system: Syste
 
 /// What differs from one mix to another: `temperature 1.7 F colder, oxygen 0.1 mg/L lower`.
 pub fn difference(was: &Mix, tried: &Mix, system: System) -> String {
+    let water = |mix: &Mix| (mix.release.temperature_c, mix.release.oxygen_mg_l);
+    apart(water(was), water(tried), system)
+}
+
+/// The same of temperatures (C) and oxygen (mg/L).
+pub fn apart(was: (f64, Option<f64>), is: (f64, Option<f64>), system: System) -> String {
     let shown = |by: f64, unit: &str, words: [&str; 2]| {
         if by.abs() < 0.05 {
             "the same to a tenth".to_owned()
@@ -161,9 +176,9 @@ pub fn difference(was: &Mix, tried: &Mix, system: System) -> String {
         }
     };
     let unit = system.unit(Dimension::TemperatureDifference);
-    let warmer = unit.from_si(tried.release.temperature_c - was.release.temperature_c);
+    let warmer = unit.from_si(is.0 - was.0);
     let mut words = format!("temperature {}", shown(warmer, unit.symbol(), ["warmer", "colder"]));
-    if let Some((a, b)) = tried.release.oxygen_mg_l.zip(was.release.oxygen_mg_l) {
+    if let Some((a, b)) = is.1.zip(was.1) {
         let _ = write!(words, ", oxygen {}", shown(a - b, "mg/L", ["higher", "lower"]));
     }
     words

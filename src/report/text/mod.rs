@@ -3,7 +3,7 @@
 mod gates;
 mod mix;
 mod pool;
-mod rank;
+pub mod rank;
 
 use std::fmt::Write as _;
 
@@ -15,7 +15,7 @@ use crate::tasks::{Context, Freshness, MixAnswer, PoolAnswer};
 use crate::units::{Dimension, System, show};
 
 pub use gates::{instruction, moves, openings};
-pub use mix::{difference, range, release_line, setting_words, standing_words};
+pub use mix::{apart, difference, range, release_line, release_words, setting_words, standing_words};
 pub use pool::{cold_since_words, layer_words, reach_words, since_words};
 
 use super::column::drawn_column;
@@ -143,13 +143,18 @@ fn labelled(label: &str, text: &str) -> String {
 
 /// Words wrapped at 80 cells, later lines indented.
 fn wrapped(text: &str, indent: usize) -> String {
+    wrapped_at(text, indent, WIDTH)
+}
+
+/// Words wrapped at so many cells, later lines indented.
+fn wrapped_at(text: &str, indent: usize, width: usize) -> String {
     let lead = text.len() - text.trim_start().len();
     let mut out = " ".repeat(lead);
     let mut used = lead;
     let mut first = true;
     for word in text.split_whitespace() {
         let wide = word.width();
-        if !first && used + 1 + wide > WIDTH {
+        if !first && used + 1 + wide > width {
             out.push('\n');
             out.push_str(&" ".repeat(indent));
             used = indent;

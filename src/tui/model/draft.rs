@@ -39,6 +39,18 @@ impl Draft {
         }
     }
 
+    /// Whether another asks for the same ranking, gates left out aside.
+    pub fn ranks_beside(&self, other: &Self) -> bool {
+        self.changed == other.changed
+            && self.release_m3s.map(f64::to_bits) == other.release_m3s.map(f64::to_bits)
+            && self.order == other.order
+    }
+
+    /// Whether another asks for the same ranking.
+    pub fn ranks_as(&self, other: &Self) -> bool {
+        self.ranks_beside(other) && self.without == other.without
+    }
+
     /// The setting on the board.
     pub fn tried(&self) -> Option<&Given> {
         self.tries.get(self.at)

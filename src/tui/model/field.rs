@@ -80,6 +80,8 @@ impl Field {
             Typed::NewSite if text.is_empty() => Err("type the name of a folder".into()),
             Typed::NewSite => Ok(Value::Words(text.to_owned())),
             Typed::Colder => bound(Dimension::Temperature),
+            // the site's own again
+            Typed::Release if text.is_empty() => Ok(Value::Number(None)),
             Typed::Release => match number(Dimension::Flow)? {
                 flow if flow > 0.0 => Ok(Value::Number(Some(flow))),
                 _ => Err("give a flow above zero".into()),

@@ -15,7 +15,7 @@ use crate::units::System;
 pub use board::{Cell, Row, rows};
 pub use draft::{Draft, History};
 pub use field::{Field, Typed, Value};
-pub use session::{MixView, PoolView, RankView, Ranked, Session, Shown};
+pub use session::{MixView, Page, PoolView, RankView, Ranked, Session, Shown, Whole};
 pub use tries::{Nudge, asked, set_flow, set_opening, set_release, set_total, taken, total_m3s};
 
 use super::look::{Look, Theme};

@@ -2,7 +2,7 @@
 
 use std::sync::Arc;
 
-use crate::tasks::rank::RankAnswer;
+use crate::tasks::rank::{RankAnswer, Shown as Mix};
 use crate::tasks::{Cast, Context, Failure, Given, MixAnswer, PoolAnswer};
 
 use super::super::work::Anew;
@@ -22,10 +22,25 @@ pub struct Shown {
 /// A ranking with what it was made for.
 #[derive(Debug, Clone)]
 pub struct Ranked {
-    /// The files with what was changed.
+    /// The files as opened.
+    pub base: Arc<Context>,
+    /// What the user had changed.
+    pub draft: Draft,
+    /// Both together.
     pub context: Arc<Context>,
     /// The answer.
     pub answer: RankAnswer,
+}
+
+/// The best of the last ranking with every gate, to hold a drill against.
+#[derive(Debug, Clone)]
+pub struct Whole {
+    /// The files as opened.
+    pub base: Arc<Context>,
+    /// What the user had changed.
+    pub draft: Draft,
+    /// The best mix; `None` where none is allowed.
+    pub best: Option<Box<Mix>>,
 }
 
 /// Where the user is on the pool screen.
@@ -52,13 +67,27 @@ pub struct MixView {
     pub scroll: usize,
 }
 
+/// What the rank screen shows.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
+pub enum Page {
+    /// The list, the mix chosen, and the trade curve.
+    #[default]
+    List,
+    /// What is rejected.
+    Rejected,
+    /// The answers beyond the list.
+    Others,
+}
+
 /// Where the user is on the rank screen.
 #[derive(Debug, Clone, Default)]
 pub struct RankView {
     /// The mix chosen, from 0.
     pub at: usize,
-    /// Whether the rejected are shown, from a line.
-    pub rejected: Option<usize>,
+    /// What is shown.
+    pub page: Page,
+    /// First line shown of what scrolls there.
+    pub scroll: usize,
 }
 
 /// An open site.
@@ -78,6 +107,8 @@ pub struct Session {
     pub wrong: Option<Failure>,
     /// The ranking: the last there is.
     pub ranked: Option<Ranked>,
+    /// The best with every gate.
+    pub whole: Option<Whole>,
     /// Why the newest question about it has no answer.
     pub rank_wrong: Option<Failure>,
     /// The screen.
@@ -107,6 +138,7 @@ impl Session {
             shown: None,
             wrong: None,
             ranked: None,
+            whole: None,
             rank_wrong: None,
             screen: Screen::Pool,
             pool: PoolView::default(),
@@ -158,6 +190,18 @@ impl Session {
     pub fn is_current(&self) -> bool {
         let of = |s: &Shown| Arc::ptr_eq(&s.on.base, &self.base) && s.on.changed == self.draft().changed;
         self.shown.as_ref().is_some_and(of)
+    }
+
+    /// Whether the ranking there is was made of these files and these changes.
+    pub fn ranks_now(&self) -> bool {
+        let of = |r: &Ranked| Arc::ptr_eq(&r.base, &self.base) && r.draft.ranks_as(self.draft());
+        self.ranked.as_ref().is_some_and(of)
+    }
+
+    /// The best with every gate under the changes a ranking was made for.
+    pub fn whole_beside(&self, ranked: &Ranked) -> Option<&Whole> {
+        let of = |w: &&Whole| Arc::ptr_eq(&w.base, &ranked.base) && w.draft.ranks_beside(&ranked.draft);
+        self.whole.as_ref().filter(of)
     }
 
     /// Whether what the user changed means the same in other files: the same gates, wells and targets, by name.

@@ -6,7 +6,7 @@ use crate::tasks::rank::Part;
 use crate::tasks::{Context, Failure, Solved};
 use crate::units::{Dimension, show};
 
-use super::super::model::{Model, Ranked, Session, Shown, Stage};
+use super::super::model::{Model, Session, Shown, Stage};
 use super::super::work::{Computed, Done, Lane, Sent};
 use super::{Effect, ask_casts, ask_mixes, ask_rank, change, complain, say};
 
@@ -40,17 +40,7 @@ pub(super) fn sent(model: &mut Model, sent: Sent) -> Vec<Effect> {
                 }
                 Done::Mixed(mixed) => self::mixed(model, mixed),
                 Done::Ranked(ranked) => {
-                    if let Some(session) = model.session_mut() {
-                        match ranked {
-                            Ok(ranked) => {
-                                let (context, answer) = *ranked;
-                                session.rank.at = session.rank.at.min(answer.mixes.len().saturating_sub(1));
-                                session.ranked = Some(Ranked { context, answer });
-                                session.rank_wrong = None;
-                            }
-                            Err(failure) => session.rank_wrong = Some(failure),
-                        }
-                    }
+                    super::rank::ranked(model, ranked);
                     Vec::new()
                 }
             }

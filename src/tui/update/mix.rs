@@ -27,7 +27,7 @@ const OPENING: (f64, f64) = (5.0, 25.0);
 /// The same of the date, days.
 const DAYS: (u64, u64) = (1, 7);
 /// Most tries kept side by side (choice).
-const TRIES: usize = 9;
+pub(super) const TRIES: usize = 9;
 
 /// Does what a key asks for.
 pub(super) fn act(model: &mut Model, action: Action) -> Vec<Effect> {

@@ -18,7 +18,7 @@ use crate::units::System;
 
 use super::keys::{Action, Place, action};
 use super::model::{Choice, Draft, Likes, Message, Model, Over, Screen, Session, Stage, Under};
-use super::view::answer_text;
+use super::view::{answer_text, rank_rows};
 use super::work::{Lane, On, Sent, Work};
 
 /// A message.
@@ -209,8 +209,8 @@ fn back(model: &mut Model) -> Vec<Effect> {
         return vec![Effect::Stop(Lane::Long, under.generation + 1)];
     }
     model.message = None;
-    if let Some(session) = model.session_mut() {
-        session.rank.rejected = None;
+    if model.session().is_some_and(|s| s.screen == Screen::Rank) {
+        return rank::back(model);
     }
     Vec::new()
 }
@@ -273,10 +273,7 @@ fn recompute(model: &mut Model, before: &Draft) -> Vec<Effect> {
     let Some(session) = model.session() else { return Vec::new() };
     let draft = session.draft();
     let mixes = draft.changed != before.changed || draft.tries != before.tries;
-    let ranks = draft.changed != before.changed
-        || draft.release_m3s.map(f64::to_bits) != before.release_m3s.map(f64::to_bits)
-        || draft.order != before.order
-        || draft.without != before.without;
+    let ranks = !draft.ranks_as(before);
     let mut effects = Vec::new();
     if mixes {
         effects.extend(ask_mixes(model, None));

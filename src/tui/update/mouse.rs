@@ -54,7 +54,7 @@ fn pointed(model: &mut Model, mouse: MouseEvent, pressed: bool) -> Vec<Effect> {
         }
         Hit::Mix(at) if pressed => {
             if let Some(session) = model.session_mut() {
-                session.rank.at = at;
+                super::rank::choose_mix(session, at);
             }
         }
         Hit::Screen(_) | Hit::Site(_) | Hit::Cell(_) | Hit::Mix(_) => {}

@@ -46,7 +46,11 @@ pub(super) fn draw(model: &Model, area: Rect, buf: &mut Buffer) {
                 1,
             );
             lines.push((format!("{screen}: pool {pool}, cast {badge}"), Role::Plain));
-            if let Some(answer) = session.tried() {
+            if session.screen == Screen::Rank {
+                for (line, role) in super::rank::in_short(model, session, width) {
+                    lines.push((line, role));
+                }
+            } else if let Some(answer) = session.tried() {
                 let system = model.system();
                 let words = format!("tried {}", text::release_line(&answer.mix, system));
                 lines.extend(wrapped(&words, width, 2).into_iter().map(|l| (l, Role::Tried)));

@@ -239,6 +239,14 @@ fn status(model: &Model, session: &Session) -> (String, Role) {
     if session.wrong.is_some() {
         return ("! no answer to the last change; what is shown is from before".into(), Role::Outside);
     }
+    let without = &session.draft().without;
+    if !without.is_empty() {
+        let names: Vec<String> = without
+            .iter()
+            .filter_map(|&o| Some(harmless(&session.base.site().outlets.get(o)?.name)))
+            .collect();
+        return (format!("! drill without {}", names.join(", ")), Role::Warn);
+    }
     (String::new(), Role::Plain)
 }
 

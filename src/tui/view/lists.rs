@@ -190,7 +190,13 @@ fn typed(model: &Model, field: &Field, area: Rect, buf: &mut Buffer) -> Position
         Some(why) => {
             put(buf, inside, 0, 1, &cut(&format!("! {}", harmless(why)), width), look.style(Role::Outside))
         }
-        None => put(buf, inside, 0, 1, "Enter sets it, Esc leaves it as it was", look.style(Role::Quiet)),
+        None => {
+            let words = match field.typed {
+                Typed::Release => "Enter sets it, empty: as the site gives it; Esc leaves it",
+                _ => "Enter sets it, Esc leaves it as it was",
+            };
+            put(buf, inside, 0, 1, words, look.style(Role::Quiet))
+        }
     };
     let column = u16::try_from(field.input.visual_cursor().saturating_sub(scroll)).unwrap_or(0);
     Position::new(inside.x + column.min(inside.width.saturating_sub(1)), inside.y)

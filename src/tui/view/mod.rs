@@ -92,6 +92,12 @@ pub fn hit(model: &Model, column: u16, row: u16) -> Option<Hit> {
     }
 }
 
+/// The furthest that what scrolls on the rank screen can be scrolled.
+pub(super) fn rank_rows(model: &Model) -> usize {
+    let area = Rect::new(0, 0, model.size.0, model.size.1);
+    model.session().map_or(0, |session| rank::last(model, session, frame::parts(model, area).body))
+}
+
 /// Why there is no answer, in one sentence.
 fn failure_words(failure: &Failure, system: System) -> String {
     match failure {

@@ -5,7 +5,9 @@ use std::fmt::Write as _;
 use crate::mix::Gate;
 use crate::problem::harmless;
 use crate::tasks::Context;
-use crate::tasks::rank::{Least, Lost, Part, Pocket, PreferredSplit, RankAnswer, Root, Shown, Trade};
+use crate::tasks::rank::{
+    Least, Lost, Part, Pocket, PreferredSplit, RankAnswer, Root, Shown, ShownPart, Trade,
+};
 use crate::units::{Dimension, System, figure, in_system};
 
 use super::{block_name, flags, flow, labelled, oxygen, temperature};
@@ -15,44 +17,64 @@ use crate::report::text::gates::{instruction, moves, named, openings};
 /// A step of the release that the pocket rule speaks of, cfs and m3/s.
 const POCKET: (f64, f64) = (100.0, 10.0);
 
-/// What to set for the best mix, why it stands first, what is not sure of it, and what to beware of.
-pub(super) fn best(context: &Context, best: &Shown) -> String {
-    let system = context.system;
-    let mut set: Vec<String> = Vec::new();
-    for (at, part) in best.parts.iter().enumerate() {
-        let lead = if best.parts.len() > 1 { block_name(context, at) + ": " } else { String::new() };
-        set.push(lead + &instruction(context, part));
-    }
+/// What is said of a mix, in words.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct Said {
+    /// What to set, in each part of the day.
+    pub set: Vec<String>,
+    /// Which gates move; `None` where none does or the setting now is not known.
+    pub moves: Option<String>,
+    /// What it gives and takes, and what puts it where it stands.
+    pub why: Vec<String>,
+    /// What comes out if gates not confirmed in position stand otherwise.
+    pub unsure: Vec<String>,
+    /// What to beware of; broken limits are told in the list.
+    pub beware: Vec<String>,
+}
+
+/// What is said of a mix.
+pub fn said(context: &Context, shown: &Shown, system: System) -> Said {
+    let set = |(at, part): (usize, &ShownPart)| {
+        let lead = if shown.parts.len() > 1 { block_name(context, at) + ": " } else { String::new() };
+        lead + &instruction(context, part, system)
+    };
     // that no gate moves is among the reasons
-    let change = best.change.as_ref().filter(|c| !c.moved.is_empty());
-    set.extend(change.map(|change| moves(context, change, context.system)));
-    let mut why: Vec<String> = best.reasons.iter().map(|r| harmless(&in_system(r, system))).collect();
-    if let Some(lost) = best.generation_lost_mw.filter(|mw| *mw > 0.0) {
+    let change = shown.change.as_ref().filter(|c| !c.moved.is_empty());
+    let mut why: Vec<String> = shown.reasons.iter().map(|r| harmless(&in_system(r, system))).collect();
+    if let Some(lost) = shown.generation_lost_mw.filter(|mw| *mw > 0.0) {
         why.push(format!("{lost:.1} MW not made"));
     }
-    if best.parts.len() > 1 {
-        why.push(format!("weighted with the flow {}", temperature(best.by_flow_c, system)));
+    if shown.parts.len() > 1 {
+        why.push(format!("weighted with the flow {}", temperature(shown.by_flow_c, system)));
     }
+    let unsure = |unsure| harmless(&in_system(&unsure_words(context.site(), unsure), system));
+    Said {
+        set: shown.parts.iter().enumerate().map(set).collect(),
+        moves: change.map(|change| moves(context, change, system)),
+        why,
+        unsure: shown.unsure.iter().map(unsure).collect(),
+        beware: flags(&shown.warnings).filter(|p| p.kind != "limit").map(|p| p.advice(system)).collect(),
+    }
+}
+
+/// What to set for the best mix, why it stands first, what is not sure of it, and what to beware of.
+pub(super) fn best(context: &Context, best: &Shown, system: System) -> String {
+    let Said { mut set, moves, why, unsure, beware } = said(context, best, system);
+    set.extend(moves);
     // without a target and without a setting now there is nothing that puts it first but the fixed order
     let why = if why.is_empty() { String::new() } else { format!(" Why: {}.", why.join("; ")) };
     let mut out = labelled("No. 1", &format!("{}.{why}", set.join("; ")));
-    for unsure in &best.unsure {
-        let words = harmless(&in_system(&unsure_words(context.site(), unsure), system));
-        out.push_str(&labelled("Unsure", &words));
-    }
-    // broken limits are told in the list
-    for flag in flags(&best.warnings).filter(|p| p.kind != "limit") {
-        out.push_str(&labelled("Beware", &flag.advice(system)));
-    }
+    unsure.iter().for_each(|words| out.push_str(&labelled("Unsure", words)));
+    beware.iter().for_each(|words| out.push_str(&labelled("Beware", words)));
     out
 }
 
-/// The answers beyond the list.
-pub(super) fn answers(context: &Context, answer: &RankAnswer) -> String {
-    let mut out = String::new();
+/// The answers beyond the list, each with its label.
+pub fn answers(context: &Context, answer: &RankAnswer, system: System) -> Vec<(&'static str, String)> {
+    let mut out = Vec::new();
     if let Some([coldest, warmest]) = answer.attainable_c {
-        let unit = context.system.unit(Dimension::Temperature);
-        let warmest = temperature(warmest, context.system);
+        let unit = system.unit(Dimension::Temperature);
+        let warmest = temperature(warmest, system);
         let mut words = format!("allowed mixes give {} to {warmest}", figure(coldest, unit, 1));
         match answer.attainable_oxygen_mg_l {
             Some([least, most]) => {
@@ -63,39 +85,37 @@ pub(super) fn answers(context: &Context, answer: &RankAnswer) -> String {
             }
             None => words.push_str(", oxygen unknown"),
         }
-        out.push_str(&labelled("Range", &words));
+        out.push(("Range", words));
     }
     if answer.trade.len() > 1 {
-        out.push_str(&labelled("Trade", &trade(context, &answer.trade)));
+        out.push(("Trade", trade(context, &answer.trade, system)));
     }
-    out.push_str(
-        &answer.split.as_ref().map_or_else(String::new, |s| labelled("Split", &split(context, answer, s))),
-    );
-    out.push_str(&answer.least.as_ref().map_or_else(String::new, |l| labelled("Least", &least(context, l))));
-    out.push_str(&answer.pocket.map_or_else(String::new, |p| labelled("More", &pocket(context, p))));
+    out.extend(answer.split.as_ref().map(|s| ("Split", split(context, answer, s, system))));
+    out.extend(answer.least.as_ref().map(|l| ("Least", least(context, l, system))));
+    out.extend(answer.pocket.map(|p| ("More", pocket(p, system))));
     if !answer.lost.is_empty() && !answer.mixes.is_empty() {
-        out.push_str(&labelled("If lost", &lost(context, &answer.lost)));
+        out.push(("If lost", lost(context, &answer.lost, system)));
     }
     out
 }
 
 /// Nearest to the preferred temperature first; of those that read alike in oxygen only the nearest.
-fn trade(context: &Context, trade: &[Trade]) -> String {
+fn trade(context: &Context, trade: &[Trade], system: System) -> String {
     let mut words: Vec<(String, String)> = Vec::new();
     for t in trade {
         let air = oxygen(t.oxygen_mg_l);
         if words.last().is_none_or(|last| last.1 != air) {
-            words.push((temperature(t.temperature_c, context.system), air));
+            words.push((temperature(t.temperature_c, system), air));
         }
     }
     let words: Vec<String> =
         words.iter().map(|(t, o)| format!("{t} {}", o.trim_end_matches(" mg/L"))).collect();
-    let last = trade.last().map_or_else(String::new, |t| named(context, &[&t.gates]).join(", "));
+    let last = trade.last().map_or_else(String::new, |t| named(context, &[&t.gates], system).join(", "));
     format!("unbeaten in both: {} mg/L ({last})", words.join(", "))
 }
 
-fn split(context: &Context, answer: &RankAnswer, split: &PreferredSplit) -> String {
-    let (site, system) = (context.site(), context.system);
+fn split(context: &Context, answer: &RankAnswer, split: &PreferredSplit, system: System) -> String {
+    let site = context.site();
     let [a, b] = split.between.map(|part| {
         harmless(match part {
             Part::Outlet(i) => &site.outlets[i].name,
@@ -110,7 +130,7 @@ fn split(context: &Context, answer: &RankAnswer, split: &PreferredSplit) -> Stri
     let rest = if of_best {
         "the rest as no. 1".to_owned()
     } else {
-        format!("of {}", named(context, &[&split.gates]).join(", "))
+        format!("of {}", named(context, &[&split.gates], system).join(", "))
     };
     let one = |r: &Root| {
         let air = oxygen(r.oxygen_mg_l);
@@ -126,10 +146,9 @@ fn split(context: &Context, answer: &RankAnswer, split: &PreferredSplit) -> Stri
     format!("{preferred} with {}, {rest}", roots.join(", or "))
 }
 
-fn least(context: &Context, least: &Least) -> String {
-    let system = context.system;
+fn least(context: &Context, least: &Least, system: System) -> String {
     if let Some(found) = least.flow_m3s {
-        let gates = named(context, &[&least.gates]).join(", ");
+        let gates = named(context, &[&least.gates], system).join(", ");
         let end = if found > least.tried_m3s[0] { "in all" } else { "in all, the least tried," };
         format!("{} {end} keeps every target: {gates}", flow(found, system))
     } else {
@@ -138,8 +157,7 @@ fn least(context: &Context, least: &Least) -> String {
     }
 }
 
-fn pocket(context: &Context, pocket: Pocket) -> String {
-    let system = context.system;
+fn pocket(pocket: Pocket, system: System) -> String {
     let (release, warmth) = (system.unit(Dimension::Flow), system.unit(Dimension::TemperatureDifference));
     let more_m3s = release.to_si(if system == System::Us { POCKET.0 } else { POCKET.1 });
     let by = warmth.from_si(pocket.c_per_m3s * more_m3s);
@@ -154,7 +172,7 @@ fn pocket(context: &Context, pocket: Pocket) -> String {
     )
 }
 
-fn lost(context: &Context, lost: &[Lost]) -> String {
+fn lost(context: &Context, lost: &[Lost], system: System) -> String {
     let one = |l: &Lost| {
         let name = harmless(&context.site().outlets[l.outlet].name);
         l.fallback.as_ref().map_or_else(
@@ -162,8 +180,8 @@ fn lost(context: &Context, lost: &[Lost]) -> String {
             |shown| {
                 format!(
                     "{name}: {} ({}, {})",
-                    openings(context, shown).join(", "),
-                    temperature(shown.temperature_c, context.system),
+                    openings(context, shown, system).join(", "),
+                    temperature(shown.temperature_c, system),
                     oxygen(shown.oxygen_mg_l)
                 )
             },

@@ -13,22 +13,30 @@ use crate::tasks::rank::{RankAnswer, Shown};
 use crate::units::{Dimension, System, figure, in_system};
 
 use crate::report::text::gates::openings;
-use crate::report::text::{WIDTH, fitted, wrapped};
+use crate::report::text::{WIDTH, fitted, wrapped, wrapped_at};
 
-/// Cells of a line; the second, the gates, takes what the others leave.
-type Cells = [String; 7];
+/// A line of the list.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct Line {
+    /// Number, gates, water, oxygen, standing, share inside, moves; the gates take what the others leave.
+    pub cells: [String; 7],
+    /// Limits it breaks.
+    pub told: Vec<String>,
+}
+
 /// What the columns hold.
-const CAPTION: &str = "10-90% and `in` (the share inside) are of our perturbed cases; moves, crew hours";
+pub const CAPTION: &str = "10-90% and `in` (the share inside) are of our perturbed cases; moves, crew hours";
 /// Least width left to the gates.
 const GATES: usize = 16;
 
+/// The lines of the list: the heading, the setting now where it is known, and the mixes, best first.
+///
 /// ```text
 ///  no gates (flows in cfs)          water F 10-90%  O2 stands  in moves
 /// now N3 100%, S3 100%              54.6 53.5-56.1 7.1 inside 55% 0
 ///   1 N3 100%, S3 100%, Sluice 180  52.9 51.8-54.2 7.0 inside 58% 1 0.5
 /// ```
-pub(super) fn list(context: &Context, answer: &RankAnswer) -> String {
-    let system = context.system;
+pub fn lines(context: &Context, answer: &RankAnswer, system: System) -> Vec<Line> {
     let heading = [
         "no".to_owned(),
         format!("gates (flows in {})", system.unit(Dimension::Flow).symbol()),
@@ -38,22 +46,30 @@ pub(super) fn list(context: &Context, answer: &RankAnswer) -> String {
         "in".to_owned(),
         "moves".to_owned(),
     ];
-    let mut rows: Vec<(Cells, Vec<String>)> = vec![(heading, Vec::new())];
-    if let Some(now) = &answer.now {
-        rows.push((cells(context, "now", now), told(context, "now", now)));
-    }
-    for (at, shown) in answer.mixes.iter().enumerate() {
-        let number = (at + 1).to_string();
-        rows.push((cells(context, &number, shown), told(context, &format!("no. {number}"), shown)));
-    }
-    if rows.len() == 1 {
-        return String::new();
-    }
-    table(&rows) + &wrapped(CAPTION, 0)
+    let line = |number: &str, whose: &str, shown: &Shown| Line {
+        cells: cells(context, number, shown, system),
+        told: told(context, whose, shown, system),
+    };
+    let now = answer.now.iter().map(|now| line("now", "now", now));
+    let mixes = answer.mixes.iter().zip(1..).map(|(shown, number)| {
+        let number = i32::to_string(&number);
+        line(&number, &format!("no. {number}"), shown)
+    });
+    std::iter::once(Line { cells: heading, told: Vec::new() }).chain(now).chain(mixes).collect()
 }
 
-fn cells(context: &Context, number: &str, shown: &Shown) -> Cells {
-    let (site, system) = (context.site(), context.system);
+/// The list at the width of the command, with what its columns hold.
+pub(super) fn list(context: &Context, answer: &RankAnswer, system: System) -> String {
+    let lines = lines(context, answer, system);
+    if lines.len() == 1 {
+        return String::new();
+    }
+    let rows = table(&lines, WIDTH).concat();
+    rows.iter().map(|row| row.clone() + "\n").collect::<String>() + &wrapped(CAPTION, 0)
+}
+
+fn cells(context: &Context, number: &str, shown: &Shown, system: System) -> [String; 7] {
+    let site = context.site();
     let unit = system.unit(Dimension::Temperature);
     let mut water = figure(shown.temperature_c, unit, 1);
     if let Some((low, high)) = shown.spread.band_c() {
@@ -66,7 +82,7 @@ fn cells(context: &Context, number: &str, shown: &Shown) -> Cells {
     });
     [
         number.to_owned(),
-        openings(context, shown).join(", "),
+        openings(context, shown, system).join(", "),
         water,
         shown.oxygen_mg_l.map_or_else(|| "?".to_owned(), |o| format!("{o:.1}")),
         standing(site, &shown.targets, system),
@@ -82,17 +98,15 @@ fn in_hours(hours: f64) -> String {
 
 /// Limits that a mix computed in full breaks though the search took it for one that keeps them, or that the setting
 /// now breaks.
-fn told(context: &Context, whose: &str, shown: &Shown) -> Vec<String> {
+fn told(context: &Context, whose: &str, shown: &Shown, system: System) -> Vec<String> {
     let broken = shown.limits.iter().filter(|c| c.broken());
     broken
-        .map(|c| {
-            format!("! {whose} misses {}", harmless(&in_system(&c.words(context.site()), context.system)))
-        })
+        .map(|c| format!("! {whose} misses {}", harmless(&in_system(&c.words(context.site()), system))))
         .collect()
 }
 
 /// The largest misses of temperature and of oxygen over some targets, in capitals; `inside` where there is none.
-pub(super) fn standing(site: &Site, targets: &[TargetStanding], system: System) -> String {
+pub fn standing(site: &Site, targets: &[TargetStanding], system: System) -> String {
     let worst = |of: &dyn Fn(&TargetStanding) -> (Standing, Option<f64>)| {
         targets
             .iter()
@@ -119,32 +133,32 @@ pub(super) fn standing(site: &Site, targets: &[TargetStanding], system: System) 
     }
 }
 
-/// Rows set out in columns, gates wrapped at their commas; what is told of a row follows it.
-fn table(rows: &[(Cells, Vec<String>)]) -> String {
-    let width = |column: usize| rows.iter().map(|r| r.0[column].width()).max().unwrap_or(0);
-    let widths: [usize; 7] = std::array::from_fn(width);
+/// The rows of each line at a width in cells: in columns, gates wrapped at their commas; what is told of a line follows
+/// it.
+pub fn table(lines: &[Line], width: usize) -> Vec<Vec<String>> {
+    let widest = |column: usize| lines.iter().map(|l| l.cells[column].width()).max().unwrap_or(0);
+    let widths: [usize; 7] = std::array::from_fn(widest);
     let others: usize = widths.iter().sum::<usize>() - widths[1] + widths.len() - 1;
-    let gates = widths[1].min(WIDTH.saturating_sub(others).max(GATES));
-    let mut out = String::new();
-    for (cells, told) in rows {
-        let [number, set, water, oxygen, standing, cases, moves] = cells;
-        let mut lines = broken_at_commas(set, gates).into_iter();
-        let first = lines.next().unwrap_or_default();
-        let [w_number, _, w_water, w_oxygen, w_standing, w_cases, _] = widths;
-        let line = format!(
+    let gates = widths[1].min(width.saturating_sub(others).max(GATES));
+    let [w_number, _, w_water, w_oxygen, w_standing, w_cases, _] = widths;
+    let rows = |line: &Line| {
+        let [number, set, water, oxygen, standing, cases, moves] = &line.cells;
+        let mut set = broken_at_commas(set, gates).into_iter();
+        let first = set.next().unwrap_or_default();
+        let row = format!(
             "{number:>w_number$} {} {water:<w_water$} {oxygen:>w_oxygen$} {} {cases:>w_cases$} {moves}",
             fitted(&first, gates),
             fitted(standing, w_standing),
         );
-        let _ = writeln!(out, "{}", line.trim_end());
-        for more in lines {
-            let _ = writeln!(out, "{:>w_number$}   {more}", "");
+        let mut out = vec![row.trim_end().to_owned()];
+        out.extend(set.map(|more| format!("{:>w_number$}   {more}", "")));
+        for words in &line.told {
+            let told = wrapped_at(&format!("{:>w_number$} {words}", ""), w_number + 3, width);
+            out.extend(told.lines().map(str::to_owned));
         }
-        for words in told {
-            out.push_str(&wrapped(&format!("{:>w_number$} {words}", ""), w_number + 3));
-        }
-    }
-    out
+        out
+    };
+    lines.iter().map(rows).collect()
 }
 
 /// A list cut after commas so that its lines fit; a part that is wider than a line is cut at its spaces, a word that is

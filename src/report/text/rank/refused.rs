@@ -7,18 +7,29 @@ use crate::problem::harmless;
 use crate::rank::Rejected;
 use crate::tasks::Context;
 use crate::tasks::rank::RankAnswer;
-use crate::units::in_system;
+use crate::units::{System, in_system};
 
 use super::{grouped, wrapped};
 
 /// Width of the count.
-const COUNT: usize = 11;
-/// Limits shown before the rest is counted.
+pub const COUNT: usize = 11;
+/// Limits the command shows before the rest is counted.
 const LINES: usize = 8;
 
-/// Limits by group; a rule of several outlets or wells is told by the one that is missed least, its
+/// What a rule rejects.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct Told {
+    /// The group of the rule.
+    pub group: Group,
+    /// How many mixes, in figures or words.
+    pub count: String,
+    /// The nearest miss, and where else.
+    pub words: String,
+}
+
+/// Limits by group, in their order; a rule of several outlets or wells is told by the one that is missed least, its
 /// count that of the one that rejects most.
-pub(super) fn rejected(context: &Context, answer: &RankAnswer) -> String {
+pub fn rejected(context: &Context, answer: &RankAnswer, system: System) -> Vec<Told> {
     let mut rules: Vec<(Rule, Vec<&Rejected>)> = Vec::new();
     for r in &answer.ranking.rejected {
         match rules.iter_mut().find(|(rule, _)| *rule == r.check.rule) {
@@ -26,29 +37,41 @@ pub(super) fn rejected(context: &Context, answer: &RankAnswer) -> String {
             None => rules.push((r.check.rule, vec![r])),
         }
     }
+    rules.iter().filter_map(|(rule, list)| told(context, answer, (*rule, list), system)).collect()
+}
+
+/// The limits as the command lists them.
+pub(super) fn list(context: &Context, answer: &RankAnswer, system: System) -> String {
+    let told = rejected(context, answer, system);
     let mut out = String::new();
     let mut before: Option<Group> = None;
-    for (rule, list) in rules.iter().take(LINES) {
-        let group = rule.group();
-        if before != Some(group) {
-            let _ = writeln!(out, "Rejected by {} limits: mixes, and the nearest miss", group.words());
-            before = Some(group);
+    for Told { group, count, words } in told.iter().take(LINES) {
+        if before != Some(*group) {
+            let _ = writeln!(out, "{}", heading(*group));
+            before = Some(*group);
         }
-        out.push_str(&told(context, answer, list));
+        out.push_str(&wrapped(&format!("{count:>COUNT$}  {words}"), COUNT + 4));
     }
-    if rules.len() > LINES {
-        let _ = writeln!(out, "{:COUNT$}  and {} more: --json", "", rules.len() - LINES);
+    if told.len() > LINES {
+        let _ = writeln!(out, "{:COUNT$}  and {} more: --json", "", told.len() - LINES);
     }
     out
 }
 
-/// One line: how many mixes, the nearest miss in words, where else.
-fn told(context: &Context, answer: &RankAnswer, list: &[&Rejected]) -> String {
+/// Stands over the limits of a group.
+pub fn heading(group: Group) -> String {
+    format!("Rejected by {} limits: mixes, and the nearest miss", group.words())
+}
+
+fn told(
+    context: &Context,
+    answer: &RankAnswer,
+    (rule, list): (Rule, &[&Rejected]),
+    system: System,
+) -> Option<Told> {
     let site = context.site();
-    let Some(nearest) = list.iter().max_by(|a, b| a.check.room.total_cmp(&b.check.room)) else {
-        return String::new();
-    };
-    let mut words = harmless(&in_system(&nearest.check.words(site), context.system));
+    let nearest = list.iter().max_by(|a, b| a.check.room.total_cmp(&b.check.room))?;
+    let mut words = harmless(&in_system(&nearest.check.words(site), system));
     if let (Rule::Outage, Of::Outlet(outlet)) = (nearest.check.rule, nearest.check.of)
         && let Some(day) = site.limits.in_use_from(outlet, context.on.date_naive())
     {
@@ -59,5 +82,5 @@ fn told(context: &Context, answer: &RankAnswer, list: &[&Rejected]) -> String {
     }
     let most = list.iter().map(|r| r.count).max().unwrap_or(0);
     let count = if most == answer.ranking.examined { "every mix".to_owned() } else { grouped(most) };
-    wrapped(&format!("{count:>COUNT$}  {words}"), COUNT + 4)
+    Some(Told { group: rule.group(), count, words })
 }

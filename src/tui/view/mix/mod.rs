@@ -169,7 +169,7 @@ fn gauge_pair(model: &Model, session: &Session) -> Option<[Gauge; 2]> {
     let (site, system) = (context.site(), model.system());
     let now = answer.now.as_ref().map(|(_, mix)| Release::from(mix));
     let tried = Release::from(&answer.mix);
-    let old = model.long.is_some() || session.rank_wrong.is_some();
+    let old = !session.ranks_now();
     let attainable = |range: fn(&crate::tasks::rank::RankAnswer) -> Option<[f64; 2]>| match &session.ranked {
         None if model.long.is_some() => Attainable::Computing,
         None => Attainable::NotAsked,
@@ -180,7 +180,10 @@ fn gauge_pair(model: &Model, session: &Session) -> Option<[Gauge; 2]> {
         },
     };
     let at = session.ranked.as_ref().and_then(|r| match r.answer.blocks[..] {
-        [(_, flow)] => Some(format!("attainable at {}", show(flow, Dimension::Flow, system, digits(model)))),
+        [(_, flow)] => {
+            let drill = if r.answer.without.is_empty() { "" } else { ", drill" };
+            Some(format!("attainable at {}{drill}", show(flow, Dimension::Flow, system, digits(model))))
+        }
         _ => None,
     });
     let note = if super::frame::is_old(model) { Some("FROM BEFORE, computing".to_owned()) } else { at };

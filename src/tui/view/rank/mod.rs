@@ -1,0 +1,166 @@
+//! The rank screen.
+//!
+//! ```text
+//! what was ranked: release, order, drill; why nothing fits
+//! list: the setting now, the mixes, best first
+//! ------------------------------------+-----------------------------
+//! the mix chosen: what to set, what   | temperature against oxygen
+//! moves, why, what to beware of       | with the mix chosen marked
+//! ```
+//! What is rejected and the answers beyond the list take the place of everything under the first lines.
+
+mod head;
+mod list;
+mod pages;
+mod said;
+mod trade;
+
+use ratatui::buffer::Buffer;
+use ratatui::layout::{Position, Rect};
+
+use super::super::draw::trade::{mix_at, trade};
+use super::super::look::Role;
+use super::super::model::{Model, Page, Ranked, Session};
+use super::Hit;
+use super::write::{cut, put, put_right, wrapped};
+
+/// Least rows of what is said of the mix chosen, where the screen has them: the trade curve fits in.
+const BELOW: u16 = 8;
+
+/// Lines with their meaning.
+type Lines = Vec<(String, Role)>;
+
+/// Where the parts lie.
+struct Parts {
+    head: Rect,
+    list: Rect,
+    said: Rect,
+    trade: Rect,
+}
+
+/// A screen that has a ranking to show.
+struct Screen<'a> {
+    model: &'a Model,
+    session: &'a Session,
+    ranked: &'a Ranked,
+    /// Whether the ranking is not of what is set now.
+    old: bool,
+}
+
+fn parts(screen: &Screen, area: Rect) -> Parts {
+    let width = usize::from(area.width);
+    let rows = |count: usize| u16::try_from(count).unwrap_or(u16::MAX);
+    let head = rows(head::lines(screen, area).len()).min(area.height);
+    let left = area.height - head;
+    let on_list = screen.session.rank.page == Page::List;
+    let below = BELOW.max(left / 3).min(left / 2 + 1).min(left);
+    let list = if on_list { rows(list::rows(screen, width).len()).min(left - below) } else { 0 };
+    let said = Rect { y: area.y + head + list, height: left - list, ..area };
+    let pictured = on_list && !screen.ranked.answer.mixes.is_empty();
+    // a column between what is said and the picture
+    let picture = if pictured { area.width / 2 } else { 0 };
+    let gap = u16::from(pictured && picture > 0);
+    Parts {
+        head: Rect { height: head, ..area },
+        list: Rect { y: area.y + head, height: list, ..area },
+        said: Rect { width: area.width.saturating_sub(picture + gap), ..said },
+        trade: Rect { x: area.x + area.width - picture, width: picture, ..said },
+    }
+}
+
+/// Draws the rank screen.
+pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
+    let Some(screen) = screen(model, session) else {
+        let lines = head::without_ranking(model, session, usize::from(area.width));
+        write(&lines, area, 0, model, buf);
+        return;
+    };
+    let parts = parts(&screen, area);
+    write(&head::lines(&screen, area), parts.head, 0, model, buf);
+    list::draw(&screen, parts.list, buf);
+    let lines = scrolled(&screen, parts.said);
+    let last = lines.len().saturating_sub(usize::from(parts.said.height));
+    let from = session.rank.scroll.min(last);
+    write(&lines, parts.said, from, model, buf);
+    if last > 0 && parts.said.height > 0 {
+        let below = last - from;
+        let words = if below > 0 { format!(" {below} more, PgDn ") } else { " PgUp ".to_owned() };
+        put_right(
+            buf,
+            parts.said,
+            parts.said.width,
+            parts.said.height - 1,
+            &words,
+            model.look.style(Role::Key),
+        );
+    }
+    if parts.trade.width > 0 {
+        trade(&trade::picture(&screen), parts.trade, buf, model.look);
+    }
+}
+
+/// What lies under a place.
+pub(super) fn hit(model: &Model, session: &Session, area: Rect, at: Position) -> Option<Hit> {
+    let screen = screen(model, session)?;
+    let parts = parts(&screen, area);
+    if parts.list.contains(at) {
+        return list::mix_at(&screen, parts.list, at).map(Hit::Mix);
+    }
+    if parts.trade.contains(at) {
+        return mix_at(&trade::picture(&screen), parts.trade, at.x, at.y).map(Hit::Mix);
+    }
+    None
+}
+
+/// The main figures, where the window is small: warnings, the mix chosen.
+pub(super) fn in_short(model: &Model, session: &Session, width: usize) -> Lines {
+    let Some(screen) = screen(model, session) else {
+        return head::without_ranking(model, session, width);
+    };
+    let mut out = head::alone(&screen, width);
+    out.extend(said::lines(&screen, width));
+    out
+}
+
+/// The furthest that what scrolls can be scrolled.
+pub(super) fn last(model: &Model, session: &Session, area: Rect) -> usize {
+    let Some(screen) = screen(model, session) else { return 0 };
+    let said = parts(&screen, area).said;
+    scrolled(&screen, said).len().saturating_sub(usize::from(said.height))
+}
+
+fn screen<'a>(model: &'a Model, session: &'a Session) -> Option<Screen<'a>> {
+    let ranked = session.ranked.as_ref()?;
+    Some(Screen { model, session, ranked, old: !session.ranks_now() })
+}
+
+/// What scrolls.
+fn scrolled(screen: &Screen, area: Rect) -> Lines {
+    let width = usize::from(area.width);
+    match screen.session.rank.page {
+        Page::List if screen.ranked.answer.mixes.is_empty() => pages::rejected(screen, width),
+        Page::List => said::lines(screen, width),
+        Page::Rejected => pages::rejected(screen, width),
+        Page::Others => pages::others(screen, width),
+    }
+}
+
+fn write(lines: &Lines, area: Rect, from: usize, model: &Model, buf: &mut Buffer) {
+    for (row, (line, role)) in (0..area.height).zip(lines.iter().skip(from)) {
+        put(buf, area, 0, row, &cut(line, usize::from(area.width)), model.look.style(*role));
+    }
+}
+
+/// Adds words, wrapped, later lines indented.
+fn say(lines: &mut Lines, text: &str, width: usize, indent: usize, role: Role) {
+    lines.extend(wrapped(text, width, indent).into_iter().map(|line| (line, role)));
+}
+
+/// Adds a label and words beside it, wrapped.
+fn labelled(lines: &mut Lines, label: &str, margin: usize, text: &str, width: usize, role: Role) {
+    let beside = wrapped(text, width.saturating_sub(margin).max(1), 0);
+    for (at, line) in beside.into_iter().enumerate() {
+        let label = if at == 0 { label } else { "" };
+        lines.push((format!("{label:margin$}{line}"), role));
+    }
+}
