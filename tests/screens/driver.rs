@@ -107,7 +107,9 @@ impl Driver {
 
     /// Answers until nothing is asked any more.
     pub(crate) fn settle(&mut self) {
-        while let Some(question) = self.question(Lane::Quick).or_else(|| self.question(Lane::Long)) {
+        // the ranking comes last: what the others tell may ask for it anew
+        let next = |d: &mut Self| [Lane::Quick, Lane::Aside, Lane::Long].into_iter().find_map(|l| d.question(l));
+        while let Some(question) = next(self) {
             self.answer(question);
         }
     }
@@ -140,15 +142,15 @@ impl Driver {
         self
     }
 
+    /// Draws in these colours, whatever is liked.
     pub(crate) fn theme(&mut self, theme: Theme) -> &mut Self {
-        self.model.terminal = theme;
-        self.model.look = self.model.likes.look.settled(theme);
+        self.model.look = Look { theme, ..self.model.look };
         self
     }
 
+    /// Draws with these symbols, whatever is liked.
     pub(crate) fn symbols(&mut self, symbols: Symbols) -> &mut Self {
-        self.model.likes.look = Look { symbols, ..self.model.likes.look };
-        self.model.look = self.model.likes.look.settled(self.model.terminal);
+        self.model.look = Look { symbols, ..self.model.look };
         self
     }
 

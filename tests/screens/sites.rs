@@ -17,7 +17,6 @@ pub(crate) fn ground() -> &'static Path {
 
 /// Three gates: two on a well, a sluice beside it.
 pub(crate) const SITE: &str = r#"name: Test Dam (invented)
-demonstration: true
 units: { length: m, area: m2, volume: m3, flow: m3/s, temperature: C }
 datum: local
 utc_offset: "-07:00"
