@@ -4,14 +4,18 @@ use std::fs;
 
 use serde_json::Value;
 
-use crate::{program, run};
+use crate::{Folder, program, run};
 
 #[test]
-fn scenario_an_empty_folder_shows_the_demonstration() {
-    let run = run(&[]);
-    assert_eq!((run.code, run.err.as_str()), (Some(0), ""));
-    assert!(run.out.starts_with("Ashlar Dam, Quillon River (invented)"), "{}", run.out);
-    assert!(run.out.contains("demonstration") && run.out.contains("Release"), "{}", run.out);
+fn scenario_without_a_terminal_the_screens_say_what_to_do_instead() {
+    let folder = Folder::usual();
+    for arguments in [&[][..], &["ashlar"], &[folder.named()]] {
+        let run = run(arguments);
+        let words = run.failed_with(2);
+        assert!(words.contains("need a terminal") && words.contains("gatemix mix"), "{words}");
+        // nothing steers whatever stands in the place of the terminal
+        assert!(!words.contains('\u{1b}'), "{words:?}");
+    }
 }
 
 #[test]

@@ -126,7 +126,6 @@ fn scenario_a_closed_pipe_is_no_error() {
         &["man"],
         &["--help"],
         &["--version"],
-        &[],
     ] {
         let (reader, writer) = std::io::pipe().unwrap();
         drop(reader);

@@ -6,8 +6,18 @@ use assert_cmd::Command;
 
 use crate::{read, root};
 
-/// Commands whose output the README shows, in its order.
-const COMMANDS: [&str; 2] = ["gatemix mix ashlar --set N2=500 --set S4=700", "gatemix rank ashlar"];
+/// What the README shows, in its order: a file of screens with the heading of one of them, or a command.
+const SHOWN: [(&str, &str); 2] = [("docs/screens/mix.txt", "mix at 80x24"), ("gatemix rank ashlar", "")];
+
+/// A screen, or what a command prints.
+fn wanted((source, heading): (&str, &str)) -> String {
+    if heading.is_empty() {
+        return printed(source);
+    }
+    let screens = read(source);
+    let (_, screen) = screens.split_once(&format!("== {heading}\n")).unwrap();
+    screen.split("== ").next().unwrap().to_owned()
+}
 
 /// What a command prints.
 fn printed(command: &str) -> String {
@@ -26,12 +36,12 @@ fn printed(command: &str) -> String {
 fn unchanged_readme_shows_what_the_program_prints() {
     let readme = read("README.md");
     let pieces: Vec<&str> = readme.split("```text\n").collect();
-    assert_eq!(pieces.len(), COMMANDS.len() + 1, "a block for each command");
+    assert_eq!(pieces.len(), SHOWN.len() + 1, "a block for each");
     let mut written = pieces[0].to_owned();
-    for ((command, piece), before) in COMMANDS.iter().zip(&pieces[1..]).zip(&pieces) {
-        assert!(before.contains(&format!("`{command}`")), "the README names {command} before its block");
+    for ((source, piece), before) in SHOWN.iter().zip(&pieces[1..]).zip(&pieces) {
+        assert!(before.contains(source.0), "the README names {} before its block", source.0);
         let (shown, tail) = piece.split_once("```").unwrap();
-        let printed = printed(command);
+        let printed = wanted(*source);
         if std::env::var_os("GATEMIX_WRITE_README").is_none() {
             assert_eq!(shown, printed, "rewrite with GATEMIX_WRITE_README=1 cargo test --test house");
         }

@@ -107,7 +107,10 @@ fn evening(no_color: bool) {
     let changed = line_with(terminal, "against now");
     terminal.send("3");
     terminal.wait_for("[3 rank]");
-    terminal.wait("the ranking", |s| s.contents().contains("Sluice") && !s.contents().contains("ranking "));
+    terminal.wait("the ranking", |s| {
+        let text = s.contents();
+        text.lines().any(|l| l.starts_with(">  1 N3 100%")) && !text.contains("ranking ")
+    });
     terminal.send("\r");
     terminal.wait_for("no. 1 of the ranking is tried");
     terminal.wait("another release", |s| {

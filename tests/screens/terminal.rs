@@ -76,7 +76,7 @@ impl Terminal {
         self.parser.screen().contents()
     }
 
-    /// Takes in what comes next; `false` where nothing does any more or until the end of the wait.
+    /// Takes in what comes next, if anything does before the end of the wait.
     fn take(&mut self, wait: Duration) -> Result<(), RecvTimeoutError> {
         let bytes = self.output.recv_timeout(wait)?;
         self.parser.process(&bytes);
@@ -98,6 +98,11 @@ impl Terminal {
     /// Waits for a text.
     pub(crate) fn wait_for(&mut self, piece: &str) {
         self.wait(piece, |screen| screen.contents().contains(piece));
+    }
+
+    /// Takes in what is there already.
+    pub(crate) fn drain(&mut self) {
+        while self.take(Duration::ZERO).is_ok() {}
     }
 
     /// Waits until the program is gone.
