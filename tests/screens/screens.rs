@@ -195,10 +195,10 @@ fn scenario_what_is_chosen_is_reversed_and_marked_with_and_without_colour() {
             cells.filter(|c| c.modifier.contains(Modifier::REVERSED)).map(|c| c.symbol()).collect::<String>()
         };
         assert!(reversed(2).contains("[2 mix]"), "{:?}", reversed(2));
-        // the gate chosen is reversed in the picture, its opening on the board
+        // the cell chosen is reversed on the board, its gate in the picture
         let picked: String = (3..18).map(|y| reversed(y) + " ").collect();
         let picked: Vec<&str> = picked.split_whitespace().collect();
-        assert_eq!(picked, ["[>Lower]", "100", "%"], "{}", text(&buffer));
+        assert_eq!(picked, ["10.0", ">Lower"], "{}", text(&buffer));
     }
 }
 
