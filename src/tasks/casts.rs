@@ -1,10 +1,14 @@
 //! The casts of a site side by side, and the same question asked of another of them.
 
+use std::sync::Arc;
+
 use chrono::{DateTime, FixedOffset};
 
+use crate::files::folder::Read;
 use crate::problem::Problem;
 use crate::profile::Profile;
 
+use super::pool::{PoolAnswer, after};
 use super::{Context, Failure};
 
 /// One cast of the folder.
@@ -14,22 +18,43 @@ pub struct Cast {
     pub file: String,
     /// When it was taken.
     pub taken: Option<DateTime<FixedOffset>>,
-    /// The cast held against the site, under its own pool; `None` where that cannot be done.
-    pub profile: Option<Profile>,
+    /// The site with this cast under its own pool, and the answer of `pool`; `None` where it cannot be held against
+    /// the site.
+    pub pool: Option<(Arc<Context>, PoolAnswer)>,
     /// Everything said of it.
     pub problems: Vec<Problem>,
 }
 
+impl Cast {
+    /// The cast held against the site.
+    pub fn profile(&self) -> Option<&Profile> {
+        self.pool.as_ref().map(|(context, _)| &context.profile)
+    }
+}
+
 /// Every cast of the folder in order of time, each under its own pool; those without a time come first.
 pub fn casts(context: &Context) -> Vec<Cast> {
-    let listed = context.folder.casts();
-    listed
-        .into_iter()
-        .map(|listed| {
-            let (profile, problems) = context.folder.profile_of(&listed);
-            Cast { file: listed.file, taken: listed.raw.and_then(|raw| raw.taken), profile, problems }
-        })
-        .collect()
+    let mut out: Vec<Cast> = Vec::new();
+    for listed in context.folder.casts() {
+        let (profile, mut problems) = context.folder.profile_of(&listed);
+        let pool = profile.zip(listed.source).map(|(profile, source)| {
+            let read = Read { profile, source };
+            let own =
+                Context::of(context.folder.clone(), read, (context.on, context.on_from), context.system);
+            // the files are in order of time: what was read before need not be read again
+            let mut sound = out.iter().rev().filter_map(|c| c.pool.as_ref()).map(|(c, _)| c);
+            let earlier = own.profile.taken.and_then(|taken| {
+                sound.find(|c| c.profile.taken.is_some_and(|t| t < taken)).map(|c| (&c.profile, &c.source))
+            });
+            let answer = after(&own, earlier);
+            (Arc::new(own), answer)
+        });
+        if let Some((own, _)) = &pool {
+            problems.clone_from(&own.profile.flags);
+        }
+        out.push(Cast { file: listed.file, taken: listed.raw.and_then(|raw| raw.taken), pool, problems });
+    }
+    out
 }
 
 impl Context {

@@ -57,14 +57,19 @@ pub struct PoolAnswer {
 
 /// Is this profile sound, how is the water layered.
 pub fn pool(context: &Context) -> PoolAnswer {
+    let earlier = previous(context);
+    after(context, earlier.as_ref().map(|(profile, source)| (profile, source)))
+}
+
+/// The answer of `pool` held against the sound cast before, where there is one.
+pub(super) fn after(context: &Context, earlier: Option<(&Profile, &Source)>) -> PoolAnswer {
     let site = context.site();
     let layering = Layering::of(&context.profile, &site.pool);
     let water = Water::of(site, &context.profile);
     let cold: Vec<ColdWater> = site.cold_water_c.iter().map(|&c| water.colder(c)).collect();
-    let earlier = previous(context);
-    let since = earlier.as_ref().and_then(|e| since(context, &e.0, (&layering, &cold)));
+    let since = earlier.and_then(|e| since(context, e.0, (&layering, &cold)));
     let against_previous = since.as_ref().and_then(|s| heat_change(context, s)).into_iter().collect();
-    let sources: Vec<&Source> = [&context.source].into_iter().chain(earlier.as_ref().map(|e| &e.1)).collect();
+    let sources: Vec<&Source> = [&context.source].into_iter().chain(earlier.map(|e| e.1)).collect();
     let fingerprint = context.folder.fingerprint(&sources);
     let Water { reach_m, outlets, .. } = water;
     PoolAnswer { layering, cold, reach_m, outlets, since, against_previous, fingerprint }

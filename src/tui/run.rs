@@ -24,11 +24,12 @@ use super::update::{Effect, Event, begin, update};
 use super::view::draw;
 use super::work::{Lane, Worker};
 
-/// How long the keyboard is listened to before the signals are looked at.
+/// How long the keyboard is listened to at a time.
 const LISTEN: Duration = Duration::from_millis(200);
-/// How often progress is drawn, and how often an idle program wakes.
+/// How often progress is drawn, how often an idle program looks whether it is to end, and how often at the files.
 const BUSY: Duration = Duration::from_millis(100);
-const IDLE: Duration = Duration::from_secs(1);
+const IDLE: Duration = Duration::from_millis(250);
+const FILES: Duration = Duration::from_secs(1);
 
 /// What arrives.
 enum Arrived {
@@ -64,11 +65,17 @@ fn on_terminal(asked: Asked) -> io::Result<()> {
         let send = send.clone();
         Worker::start(move |sent| _ = send.send(Arrived::Event(Event::Sent(sent))))
     };
-    let mut outside =
-        Outside { quick: worker(&send), long: worker(&send), watched: Arc::default(), send: send.clone() };
+    let mut outside = Outside {
+        quick: worker(&send),
+        long: worker(&send),
+        aside: worker(&send),
+        watched: Arc::default(),
+        send: send.clone(),
+    };
     watch(&outside.watched, send.clone());
     let paused = Arc::new(AtomicBool::new(false));
-    listen(send, Arc::clone(&paused))?;
+    let end = signals()?;
+    listen(send, Arc::clone(&paused));
     let mut effects = start(&mut model);
     loop {
         for effect in effects {
@@ -86,7 +93,7 @@ fn on_terminal(asked: Asked) -> io::Result<()> {
                 frame.set_cursor_position(cursor);
             }
         })?;
-        match wait(&arrivals, &mut model) {
+        match wait(&arrivals, &mut model, &end) {
             Some(next) => effects = next,
             None => return Ok(()),
         }
@@ -108,9 +115,13 @@ fn start(model: &mut Model) -> Vec<Effect> {
 }
 
 /// Waits until something arrives that changes what is shown; what then is to be done. `None` at the end.
-fn wait(arrivals: &Receiver<Arrived>, model: &mut Model) -> Option<Vec<Effect>> {
+fn wait(arrivals: &Receiver<Arrived>, model: &mut Model, end: &AtomicBool) -> Option<Vec<Effect>> {
     loop {
-        let busy = model.quick.is_some() || model.long.is_some();
+        // a terminal that is gone may leave the listener reading nothing for ever, so it is looked at here
+        if end.load(Ordering::Relaxed) || !terminal::is_there() {
+            return None;
+        }
+        let busy = model.quick.is_some() || model.long.is_some() || model.aside.is_some();
         let first = arrivals.recv_timeout(if busy { BUSY } else { IDLE });
         let mut effects = update(model, Event::Tick(Utc::now()));
         match first {
@@ -135,6 +146,7 @@ fn wait(arrivals: &Receiver<Arrived>, model: &mut Model) -> Option<Vec<Effect>> 
 struct Outside {
     quick: Worker,
     long: Worker,
+    aside: Worker,
     watched: Arc<Mutex<Option<String>>>,
     send: Sender<Arrived>,
 }
@@ -170,6 +182,7 @@ impl Outside {
         match lane {
             Lane::Quick => &self.quick,
             Lane::Long => &self.long,
+            Lane::Aside => &self.aside,
         }
     }
 
@@ -194,19 +207,20 @@ fn sites(folder: Option<&str>) -> Vec<Choice> {
     found.chain(inside).collect()
 }
 
-/// Listens to the keyboard and to the signals that end a program.
-fn listen(send: Sender<Arrived>, paused: Arc<AtomicBool>) -> io::Result<()> {
+/// Set by the signals that end a program.
+fn signals() -> io::Result<Arc<AtomicBool>> {
     let end = Arc::new(AtomicBool::new(false));
     #[cfg(unix)]
     for signal in [signal_hook::consts::SIGTERM, signal_hook::consts::SIGHUP, signal_hook::consts::SIGINT] {
         signal_hook::flag::register(signal, Arc::clone(&end))?;
     }
+    Ok(end)
+}
+
+/// Listens to the keyboard, except while the program is stopped.
+fn listen(send: Sender<Arrived>, paused: Arc<AtomicBool>) {
     thread::spawn(move || {
         loop {
-            if end.load(Ordering::Relaxed) {
-                _ = send.send(Arrived::End);
-                return;
-            }
             if paused.load(Ordering::Relaxed) {
                 thread::sleep(LISTEN);
                 continue;
@@ -233,7 +247,6 @@ fn listen(send: Sender<Arrived>, paused: Arc<AtomicBool>) -> io::Result<()> {
             }
         }
     });
-    Ok(())
 }
 
 /// Looks each second whether the files of the site watched differ from what they were.
@@ -251,7 +264,7 @@ fn watch(watched: &Arc<Mutex<Option<String>>>, send: Sender<Arrived>) {
                     return;
                 }
             }
-            thread::sleep(IDLE);
+            thread::sleep(FILES);
         }
     });
 }

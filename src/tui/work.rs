@@ -13,7 +13,8 @@ use chrono::{DateTime, Utc};
 use crate::problem::Problem;
 use crate::tasks::rank::{RankAnswer, RankAsked, rank};
 use crate::tasks::{
-    Asked, Changed, Context, Failure, Given, MixAnswer, PoolAnswer, Solved, mix_given, open, pool, solve,
+    Asked, Cast, Changed, Context, Failure, Given, MixAnswer, PoolAnswer, Solved, casts, mix_given, open,
+    pool, solve,
 };
 use crate::units::System;
 
@@ -26,6 +27,8 @@ pub enum Lane {
     Quick,
     /// The ranking.
     Long,
+    /// The casts of the season.
+    Aside,
 }
 
 /// What settings are computed on.
@@ -60,6 +63,8 @@ pub enum Work {
         /// What is asked.
         asked: RankAsked,
     },
+    /// Every cast of the season, under what is changed except the pool and the cast.
+    Casts(Arc<Context>, Changed),
 }
 
 /// What settings are computed on.
@@ -95,6 +100,8 @@ pub enum Done {
     Mixed(Result<Box<Computed>, Failure>),
     /// The ranking, with what it was made for.
     Ranked(Result<Box<(Arc<Context>, RankAnswer)>, Failure>),
+    /// The casts of the season.
+    Casts(Result<Vec<Cast>, Failure>),
 }
 
 impl Work {
@@ -103,6 +110,7 @@ impl Work {
         match self {
             Self::Open(..) | Self::Mix { .. } => Lane::Quick,
             Self::Rank { .. } => Lane::Long,
+            Self::Casts(..) => Lane::Aside,
         }
     }
 
@@ -115,6 +123,10 @@ impl Work {
                 let answer = rank(&context, &asked, progress)?;
                 Ok(Box::new((Arc::new(context), answer)))
             })),
+            Self::Casts(base, changed) => {
+                let changed = Changed { cast: None, pool_m: None, ..changed };
+                Done::Casts(base.changed(&changed).map(|context| casts(&context)))
+            }
         }
     }
 
@@ -124,6 +136,7 @@ impl Work {
         let failure = Failure::Refused(vec![problem], System::default());
         match lane {
             Lane::Long => Done::Ranked(Err(failure)),
+            Lane::Aside => Done::Casts(Err(failure)),
             Lane::Quick if opening => Done::Opened(Err(failure)),
             Lane::Quick => Done::Mixed(Err(failure)),
         }

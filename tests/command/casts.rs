@@ -42,7 +42,11 @@ fn law_another_cast_gives_the_context_that_opening_it_by_name_gives() {
         }
         let answer = |context: &Context| format!("{:?}", tasks::pool(context));
         let other = ashlar.with_cast(&cast.file).unwrap();
-        assert_eq!(answer(&other), answer(&open("ashlar", Some(name), None).unwrap()));
+        let own = answer(&open("ashlar", Some(name), None).unwrap());
+        assert_eq!(answer(&other), own);
+        let (context, read) = cast.pool.as_ref().unwrap();
+        assert!(whole(context) == whole(&other), "{name}, as read with the others");
+        assert_eq!(format!("{read:?}"), own);
         assert!(
             whole(&other.with_cast(&casts[0].file).unwrap())
                 == whole(&ashlar.with_cast(&casts[0].file).unwrap())
@@ -71,13 +75,13 @@ fn scenario_casts_stand_in_order_of_time_each_under_its_own_pool() {
     let casts = tasks::casts(&context);
     let files: Vec<&str> = casts.iter().map(|c| c.file.rsplit('/').next().unwrap()).collect();
     assert_eq!(files, ["broken.csv", "m.csv", "z.csv", "a.csv"]);
-    let pools: Vec<Option<f64>> = casts.iter().map(|c| c.profile.as_ref().map(|p| p.pool_m)).collect();
+    let pools: Vec<Option<f64>> = casts.iter().map(|c| c.profile().map(|p| p.pool_m)).collect();
     assert_eq!(pools, [None, Some(60.0), Some(58.0), Some(59.0)]);
     let taken: Vec<bool> = casts.iter().map(|c| c.taken.is_some()).collect();
     assert_eq!(taken, [false, false, true, true]);
     assert!(casts[0].problems.iter().any(|p| p.weight == Weight::Refused));
     for cast in &casts[1..] {
-        let profile = cast.profile.as_ref().unwrap();
+        let profile = cast.profile().unwrap();
         assert_eq!((profile.taken, &profile.flags), (cast.taken, &cast.problems));
         assert!(cast.problems.iter().all(|p| p.weight != Weight::Refused));
     }

@@ -356,12 +356,17 @@ fn scenario_a_row_of_the_ranking_typed_back_gives_its_water() {
     let wells = SITE
         .lines()
         .filter(|l| !l.contains("well") && !l.contains("- { name: North") && !l.contains("- { name: South"));
-    let site =
-        wells.map(|l| l.replace("now: { N1: 10 }", "now: { Sluice: 10 }")).collect::<Vec<_>>().join("\n");
+    let site = wells
+        .map(|l| {
+            l.replace("now: { N1: 10 }", "now: { Sluice: 10 }")
+                .replace("discharge: 0.7", "positions: [0, 40]")
+        })
+        .collect::<Vec<_>>()
+        .join("\n");
     let folder = folder(&site);
     let ranked = run(&["rank", folder.named(), "--release", "30", "--json", "--top", "50"]).json();
     let rows = ranked["mixes"].as_array().unwrap();
-    let both = rows.iter().filter(|row| row["open"]["Leaves"].as_f64().is_some_and(|open| open < 100.0));
+    let both = rows.iter().filter(|row| row["open"]["Sluice"].as_f64().is_some_and(|open| open < 100.0));
     let mut seen = 0;
     for row in both {
         let set = row["set"].as_object().unwrap();

@@ -57,6 +57,11 @@ impl Check {
         format!("{}{}: {words}{reason}", self.rule.name(), self.of_words(site))
     }
 
+    /// The room left of a limit that is kept, quantities in the reader's units; `None` where nothing bounds it.
+    pub fn spare(&self) -> Option<String> {
+        (self.room.is_finite() && !self.broken()).then(|| self.said(self.room))
+    }
+
     /// What to do about a missed limit.
     pub fn cure(&self) -> &'static str {
         match self.rule {

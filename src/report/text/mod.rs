@@ -16,6 +16,7 @@ use crate::units::{Dimension, System, show};
 
 pub use gates::{instruction, moves, openings};
 pub use mix::{apart, difference, range, release_line, release_words, setting_words, standing_words};
+pub use pool::{cold_since_words, layer_words, reach_words, since_words};
 
 use super::column::drawn_column;
 use super::fitted;
@@ -189,7 +190,8 @@ fn oxygen(mg_l: Option<f64>) -> String {
     mg_l.map_or_else(|| "unknown".to_owned(), |o| format!("{o:.1} mg/L"))
 }
 
-fn volume(m3: f64, system: System) -> String {
+/// A volume of water.
+pub fn volume(m3: f64, system: System) -> String {
     match system {
         System::Us => show(m3, Dimension::Volume, system, 0),
         System::Si => format!("{:.2} hm3", m3 / 1e6),

@@ -9,63 +9,61 @@ use crate::units::System;
 use super::{fitted, length, oxygen, step, temperature, volume, wrapped};
 
 pub(super) fn layers(context: &Context, answer: &PoolAnswer) -> String {
-    let system = context.system;
+    let mut out = String::new();
+    for line in layer_words(context, answer, context.system) {
+        let _ = writeln!(out, "{line}");
+    }
+    if let Some(since) = since_words(context, answer, context.system) {
+        out.push_str(&wrapped(&since, 1));
+    }
+    out.push_str(&cold_water(context, answer));
+    out.push('\n');
+    out
+}
+
+/// How the water is layered, one statement each.
+pub fn layer_words(context: &Context, answer: &PoolAnswer, system: System) -> Vec<String> {
     let l = &answer.layering;
-    let mut out = format!(
-        "Surface {}, bed {}, mean {}; stored {}\n",
+    let temperatures = format!(
+        "Surface {}, bed {}, mean {}; stored {}",
         temperature(l.surface_c, system),
         temperature(l.bed_c, system),
         temperature(l.mean_c, system),
         volume(l.volume_m3, system)
     );
-    match &l.thermocline {
+    let thermocline = match &l.thermocline {
         None => {
-            let _ = writeln!(
-                out,
-                "No thermocline: top and bottom differ by less than about {}",
-                step(1.0, system)
-            );
+            format!("No thermocline: top and bottom differ by less than about {}", step(1.0, system))
         }
         Some(t) => {
             let per = match system {
                 System::Us => format!("{:.1} F per ft", t.gradient_c_m * 1.8 * 0.3048),
                 System::Si => format!("{:.1} C per m", t.gradient_c_m),
             };
-            let _ = writeln!(
-                out,
+            format!(
                 "Thermocline at {}, {} below the surface: {per}",
                 length(t.elevation_m, system),
                 length(context.profile.pool_m - t.elevation_m, system)
-            );
+            )
         }
-    }
-    let _ = writeln!(
-        out,
+    };
+    let mixed = format!(
         "Mixed layer down to {}; Schmidt stability {:.0} J/m2",
         length(l.mixed_base_m, system),
         l.schmidt_j_m2
     );
-    match l.oxygen_min {
-        None => out.push_str("No oxygen measured\n"),
-        Some(least) => {
-            let _ = writeln!(
-                out,
-                "Lowest oxygen {:.1} mg/L at {}",
-                least.oxygen_mg_l,
-                length(least.elevation_m, system)
-            );
-        }
-    }
-    out.push_str(&since(context, answer));
-    out.push_str(&cold_water(context, answer));
-    out.push('\n');
-    out
+    let least = l.oxygen_min.map_or_else(
+        || "No oxygen measured".to_owned(),
+        |least| {
+            format!("Lowest oxygen {:.1} mg/L at {}", least.oxygen_mg_l, length(least.elevation_m, system))
+        },
+    );
+    vec![temperatures, thermocline, mixed, least]
 }
 
-/// What the water did since the cast before.
-fn since(context: &Context, answer: &PoolAnswer) -> String {
-    let Some(s) = &answer.since else { return String::new() };
-    let system = context.system;
+/// What the water did since the cast before, where there is one.
+pub fn since_words(context: &Context, answer: &PoolAnswer, system: System) -> Option<String> {
+    let s = answer.since.as_ref()?;
     let between =
         if s.days < 2.0 { format!("{:.0} hours", s.days * 24.0) } else { format!("{:.0} days", s.days) };
     let mut out = format!(
@@ -91,7 +89,7 @@ fn since(context: &Context, answer: &PoolAnswer) -> String {
     if let Some(flux) = s.heat_w_m2 {
         let _ = write!(out, "; heat {}", signed(format!("{flux:.0} W/m2")));
     }
-    wrapped(&out, 1)
+    Some(out)
 }
 
 /// A figure without its unit, where the next one says it.
@@ -131,26 +129,34 @@ fn cold_water(context: &Context, answer: &PoolAnswer) -> String {
             volume(c.total_m3, system)
         );
     }
-    if let Some(reach) = answer.reach_m {
-        let _ = writeln!(
-            out,
-            "usable: above {}, the lowest that the deepest usable outlet draws from",
-            length(reach, system)
-        );
+    if let Some(reach) = reach_words(answer, system) {
+        let _ = writeln!(out, "{reach}");
     }
-    if let Some(since) = &answer.since {
-        let changes = since.cold.iter().map(|c| {
-            let of = |m3: f64| signed(volume(m3, system));
-            let change = match (c.usable_m3.map(of), of(c.total_m3)) {
-                (Some(usable), total) => format!("{usable} usable, {} in all", bare(&total)),
-                (None, total) => format!("{total} in all"),
-            };
-            format!("below {} {change}", temperature(c.threshold_c, system))
-        });
-        let changes: Vec<String> = changes.collect();
-        out.push_str(&wrapped(&format!("since {}: {}", date(context, since), changes.join("; ")), 2));
+    if let Some(since) = cold_since_words(context, answer, system) {
+        out.push_str(&wrapped(&since, 2));
     }
     out
+}
+
+/// What usable means of cold water, where an outlet is usable.
+pub fn reach_words(answer: &PoolAnswer, system: System) -> Option<String> {
+    let reach = length(answer.reach_m?, system);
+    Some(format!("usable: above {reach}, the lowest that the deepest usable outlet draws from"))
+}
+
+/// How the volumes of cold water changed since the cast before, where there is one and the site names a threshold.
+pub fn cold_since_words(context: &Context, answer: &PoolAnswer, system: System) -> Option<String> {
+    let since = answer.since.as_ref().filter(|s| !s.cold.is_empty())?;
+    let changes = since.cold.iter().map(|c| {
+        let of = |m3: f64| signed(volume(m3, system));
+        let change = match (c.usable_m3.map(of), of(c.total_m3)) {
+            (Some(usable), total) => format!("{usable} usable, {} in all", bare(&total)),
+            (None, total) => format!("{total} in all"),
+        };
+        format!("below {} {change}", temperature(c.threshold_c, system))
+    });
+    let changes: Vec<String> = changes.collect();
+    Some(format!("since {}: {}", date(context, since), changes.join("; ")))
 }
 
 pub(super) fn outlets(context: &Context, answer: &PoolAnswer) -> String {

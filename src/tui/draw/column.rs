@@ -39,6 +39,10 @@ pub enum GateState {
     OpenNoFlow,
     /// Shut.
     Shut,
+    /// Under water; whether it is open is not told.
+    Wet,
+    /// Under less water than it asks for; whether it is open is not told.
+    Short,
     /// Above the water.
     Dry,
     /// Out of use.
@@ -47,10 +51,12 @@ pub enum GateState {
 
 impl GateState {
     /// Each with its sign in the picture and what the legend says.
-    pub const SIGNS: [(Self, char, &str); 5] = [
+    pub const SIGNS: [(Self, char, &str); 7] = [
         (Self::Drawing, '>', "draws"),
         (Self::OpenNoFlow, '=', "open, no flow"),
         (Self::Shut, '|', "shut"),
+        (Self::Wet, ' ', "under water"),
+        (Self::Short, '!', "too little water above"),
         (Self::Dry, '^', "above water"),
         (Self::Out, 'x', "out"),
     ];
@@ -121,7 +127,7 @@ pub struct Picture {
     pub surface_m: f64,
     /// The cast.
     pub water: Water,
-    /// Other casts, drawn quieter.
+    /// Other casts, drawn quieter; numbered from 1 where there are several.
     pub overlays: Vec<Water>,
     /// Elevation of the thermocline, m.
     pub thermocline_m: Option<f64>,

@@ -79,7 +79,7 @@ impl Field {
         match self.typed {
             Typed::NewSite if text.is_empty() => Err("type the name of a folder".into()),
             Typed::NewSite => Ok(Value::Words(text.to_owned())),
-            Typed::Colder => number(Dimension::Temperature).map(|v| Value::Number(Some(v))),
+            Typed::Colder => bound(Dimension::Temperature),
             // the site's own again
             Typed::Release if text.is_empty() => Ok(Value::Number(None)),
             Typed::Release => match number(Dimension::Flow)? {

@@ -151,6 +151,8 @@ pub struct Model {
     pub quick: Option<Under>,
     /// What is being computed in the long lane.
     pub long: Option<Under>,
+    /// What is being read in the lane aside.
+    pub aside: Option<Under>,
 }
 
 impl Model {
@@ -170,6 +172,7 @@ impl Model {
             generation: 0,
             quick: None,
             long: None,
+            aside: None,
         }
     }
 
@@ -194,6 +197,7 @@ impl Model {
         match lane {
             Lane::Quick => &mut self.quick,
             Lane::Long => &mut self.long,
+            Lane::Aside => &mut self.aside,
         }
     }
 }

@@ -3,11 +3,11 @@
 use std::sync::Arc;
 
 use crate::tasks::rank::{RankAnswer, Shown as Mix};
-use crate::tasks::{Context, Failure, Given, MixAnswer};
+use crate::tasks::{Cast, Context, Failure, Given, MixAnswer, PoolAnswer};
 
 use super::super::work::Anew;
 use super::Screen;
-use super::board::{Cell, rows};
+use super::board::{Cell, Row, rows};
 use super::draft::{Draft, History};
 
 /// Pool and settings as they were computed together.
@@ -48,13 +48,13 @@ pub struct Whole {
 pub struct PoolView {
     /// Elevation read, m.
     pub cursor_m: Option<f64>,
-    /// Cast looked at, counted in the season's; the one used when absent.
-    pub cast: Option<usize>,
-    /// Casts laid over.
-    pub over: Vec<usize>,
+    /// File of the cast looked at; the one worked with when absent.
+    pub cast: Option<String>,
+    /// Files of the casts laid over, in the order they were.
+    pub over: Vec<String>,
     /// Threshold typed, C.
     pub colder_c: Option<f64>,
-    /// First line of the flags shown.
+    /// First line of the words shown.
     pub scroll: usize,
 }
 
@@ -95,6 +95,10 @@ pub struct RankView {
 pub struct Session {
     /// The files as opened.
     pub base: Arc<Context>,
+    /// Casts of the season, as last read.
+    pub casts: Option<Vec<Cast>>,
+    /// Why they could not be.
+    pub casts_wrong: Option<Failure>,
     /// What the user changed.
     pub history: History,
     /// Pool and settings: the last answer there is.
@@ -121,12 +125,16 @@ impl Session {
     /// A site just opened: the setting now is tried first.
     pub fn begin(base: Arc<Context>) -> Self {
         let now = Given::now(base.site());
-        let cell = rows(base.site(), base.on.date_naive())
-            .first()
-            .map_or(Cell::Pool, |row| row.cells(base.site())[0]);
+        // what is open now is what is turned first
+        let rows = rows(base.site(), base.on.date_naive());
+        let opens = |row: &&Row| matches!(row, Row::Outlet(i) if base.site().now.iter().any(|n| n.0 == *i));
+        let row = rows.iter().find(opens).or(rows.first());
+        let cell = row.and_then(|row| row.cells(base.site()).last().copied()).unwrap_or(Cell::Pool);
         Self {
             history: History::begin(Draft::begin(now)),
             base,
+            casts: None,
+            casts_wrong: None,
             shown: None,
             wrong: None,
             ranked: None,
@@ -147,6 +155,35 @@ impl Session {
     /// The files with what is changed, as far as that is computed.
     pub fn context(&self) -> &Arc<Context> {
         self.shown.as_ref().map_or(&self.base, |s| &s.on.context)
+    }
+
+    /// A cast of the season.
+    pub fn cast(&self, file: &str) -> Option<&Cast> {
+        self.casts.as_ref()?.iter().find(|c| c.file == file)
+    }
+
+    /// The cast looked at instead of the one worked with.
+    pub fn looked_at(&self) -> Option<&Cast> {
+        self.pool
+            .cast
+            .as_deref()
+            .filter(|file| *file != self.context().profile.file)
+            .and_then(|file| self.cast(file))
+    }
+
+    /// What the pool screen speaks of: the cast looked at, else the one worked with; `None` where that cast cannot be
+    /// read or nothing is computed yet.
+    pub fn pool_shown(&self) -> Option<(&Arc<Context>, &PoolAnswer)> {
+        match self.looked_at() {
+            Some(cast) => cast.pool.as_ref().map(|(context, answer)| (context, answer)),
+            None => self.shown.as_ref().map(|s| (&s.on.context, &s.on.pool)),
+        }
+    }
+
+    /// The pool of the cast worked with, before any other is tried, m.
+    pub fn own_pool_m(&self) -> f64 {
+        let chosen = self.draft().changed.cast.as_deref().and_then(|file| self.cast(file));
+        chosen.and_then(Cast::profile).unwrap_or(&self.base.profile).pool_m
     }
 
     /// Whether what is shown was computed on these files and with these changes.

@@ -8,7 +8,7 @@ use crate::units::{Dimension, show};
 
 use super::super::model::{Model, Session, Shown, Stage};
 use super::super::work::{Computed, Done, Lane, Sent};
-use super::{Effect, ask_mixes, ask_rank, change, complain, say};
+use super::{Effect, ask_casts, ask_mixes, ask_rank, change, complain, say};
 
 /// Takes what a worker sent; what is no longer wanted is dropped.
 pub(super) fn sent(model: &mut Model, sent: Sent) -> Vec<Effect> {
@@ -29,6 +29,15 @@ pub(super) fn sent(model: &mut Model, sent: Sent) -> Vec<Effect> {
             *model.under(lane) = None;
             match done {
                 Done::Opened(opened) => self::opened(model, opened),
+                Done::Casts(casts) => {
+                    if let Some(session) = model.session_mut() {
+                        match casts {
+                            Ok(casts) => (session.casts, session.casts_wrong) = (Some(casts), None),
+                            Err(failure) => session.casts_wrong = Some(failure),
+                        }
+                    }
+                    Vec::new()
+                }
                 Done::Mixed(mixed) => self::mixed(model, mixed),
                 Done::Ranked(ranked) => {
                     super::rank::ranked(model, ranked);
@@ -73,7 +82,7 @@ fn opened(model: &mut Model, opened: Result<Arc<Context>, Failure>) -> Vec<Effec
         }
     };
     model.stage = Stage::Site(session);
-    [ask_mixes(model, None), ask_rank(model)].into_iter().flatten().collect()
+    [ask_mixes(model, None), ask_casts(model), ask_rank(model)].into_iter().flatten().collect()
 }
 
 fn mixed(model: &mut Model, mixed: Result<Box<Computed>, Failure>) -> Vec<Effect> {
@@ -123,7 +132,7 @@ fn take_solved(model: &mut Model, solved: Result<Solved, Failure>) -> Vec<Effect
     let Some((root, given)) = solved.roots.first() else {
         let [low, high] = solved.bracket_c;
         let words = format!(
-            "no split between {} and {} gives {}: they give {} to {}",
+            "no split between {} and {} gives {}: they give {} to {}; open a gate at another level",
             names[0],
             names[1],
             shown(solved.wanted_c),

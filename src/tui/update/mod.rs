@@ -195,8 +195,15 @@ fn to_screen(model: &mut Model, to: impl Fn(usize) -> usize) -> Vec<Effect> {
     Vec::new()
 }
 
-/// Back: long work is stopped first, then what was said is taken off.
+/// Back: what is looked at on the pool screen first, then long work is stopped, then what was said is taken off.
 fn back(model: &mut Model) -> Vec<Effect> {
+    if let Some(session) = model.session_mut().filter(|s| s.screen == Screen::Pool) {
+        let read = session.pool.cursor_m.take().is_some();
+        if read || session.pool.cast.take().is_some() {
+            model.message = None;
+            return Vec::new();
+        }
+    }
     if let Some(under) = model.long.take() {
         say(model, "stopped; what is shown was computed before");
         return vec![Effect::Stop(Lane::Long, under.generation + 1)];
@@ -205,14 +212,11 @@ fn back(model: &mut Model) -> Vec<Effect> {
     if model.session().is_some_and(|s| s.screen == Screen::Rank) {
         return rank::back(model);
     }
-    if let Some(session) = model.session_mut() {
-        session.pool.cursor_m = None;
-    }
     Vec::new()
 }
 
 fn copy(model: &mut Model) -> Vec<Effect> {
-    if let Some(text) = model.session().and_then(answer_text) {
+    if let Some(text) = answer_text(model) {
         say(model, "copied to the clipboard of the terminal, where it takes that");
         return vec![Effect::Copy(text)];
     }
@@ -276,7 +280,21 @@ fn recompute(model: &mut Model, before: &Draft) -> Vec<Effect> {
     if ranks {
         effects.extend(ask_rank(model));
     }
+    if draft_of(model).is_some_and(|d| d.changed.on != before.changed.on) {
+        effects.extend(ask_casts(model));
+    }
     effects
+}
+
+fn draft_of(model: &Model) -> Option<&Draft> {
+    model.session().map(Session::draft)
+}
+
+/// Asks for the casts of the season, each as old as it is at the date.
+fn ask_casts(model: &mut Model) -> Option<Effect> {
+    let session = model.session()?;
+    let work = Work::Casts(session.base.clone(), session.draft().changed.clone());
+    Some(ask(model, work))
 }
 
 /// Asks for every try that has no answer yet.

@@ -12,13 +12,14 @@
 
 use ratatui::buffer::Buffer;
 use ratatui::layout::{Position, Rect};
+use unicode_width::UnicodeWidthStr;
 
 use crate::problem::harmless;
 use crate::report::caution_within;
 use crate::tasks::{Context, Freshness};
 use crate::units::{Dimension, System, show};
 
-use super::super::keys::hints;
+use super::super::keys::{Place, hints};
 use super::super::look::Role;
 use super::super::model::{Model, Screen, Session, Stage, Under};
 use super::super::update::places;
@@ -97,16 +98,29 @@ pub(super) fn draw(model: &Model, parts: &Parts, buf: &mut Buffer) {
     put(buf, parts.caution, 0, 0, words, look.style(Role::Caution));
 }
 
+/// Keys of the place at the left, those that work everywhere at the right, where they are found on every screen.
 fn keys(model: &Model, area: Rect, buf: &mut Buffer) {
+    let all = places(model);
+    let (here, everywhere): (Vec<Place>, Vec<Place>) = all.into_iter().partition(|p| *p != Place::Everywhere);
+    let common = hints(&everywhere);
+    let wide = |(key, word): &(&str, &str)| key.len() + word.len() + 3;
+    let reserved: usize = common.iter().map(wide).sum();
+    let mut end = usize::from(area.width).saturating_sub(reserved);
     let mut column = 0;
-    for (key, word) in hints(&places(model)) {
-        let room = usize::from(area.width.saturating_sub(column));
-        if key.len() + word.len() + 3 > room {
+    let hint = |(key, word): (&str, &str), column: u16, buf: &mut Buffer| {
+        let column = put(buf, area, column, 0, key, model.look.style(Role::Key));
+        let column = put(buf, area, column, 0, " ", model.look.style(Role::Quiet));
+        put(buf, area, column, 0, word, model.look.style(Role::Quiet)) + 2
+    };
+    for shown in hints(&here) {
+        if usize::from(column) + wide(&shown) > end {
             break;
         }
-        column = put(buf, area, column, 0, key, model.look.style(Role::Key));
-        column = put(buf, area, column, 0, " ", model.look.style(Role::Quiet));
-        column = put(buf, area, column, 0, word, model.look.style(Role::Quiet)) + 2;
+        column = hint(shown, column, buf);
+    }
+    for shown in common {
+        hint(shown, u16::try_from(end + 1).unwrap_or(u16::MAX), buf);
+        end += wide(&shown);
     }
 }
 
@@ -130,15 +144,26 @@ fn head(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
     let column = put(buf, area, 0, 0, &cut(&harmless(&site.name), room), look.style(Role::Strong));
     put(buf, area, column, 0, mark, look.style(Role::Warn));
     let mut column = 0;
-    for (words, role) in facts(session, context, model.system(), wide) {
+    let cells = |facts: &[(String, Role)]| facts.iter().map(|f| f.0.width() + 1).sum::<usize>();
+    let facts = [true, false]
+        .map(|hour| facts(session, context, model.system(), (wide, hour)))
+        .into_iter()
+        .reduce(|long, short| if cells(&long) > usize::from(area.width) + 1 { short } else { long });
+    for (words, role) in facts.unwrap_or_default() {
         column = put(buf, area, column, 1, &words, look.style(role)) + 1;
     }
 }
 
-/// Pool, cast, age, badge, date: in words with the role of each.
-fn facts(session: &Session, context: &Context, system: System, wide: bool) -> Vec<(String, Role)> {
+/// Pool, cast, age, badge, date: in words with the role of each; the hours of the cast and the date where asked for.
+fn facts(
+    session: &Session,
+    context: &Context,
+    system: System,
+    (wide, to_the_hour): (bool, bool),
+) -> Vec<(String, Role)> {
     let site = context.site();
-    let hour = if wide { "%Y-%m-%d %H:%M" } else { "%Y-%m-%d" };
+    let day = "%Y-%m-%d";
+    let hour = if wide && to_the_hour { "%Y-%m-%d %H:%M" } else { day };
     let pool = show(context.profile.pool_m, Dimension::Length, system, 1);
     let badge = Freshness::of(site, context.age_days);
     let taken = context.profile.taken.map_or_else(
@@ -155,10 +180,14 @@ fn facts(session: &Session, context: &Context, system: System, wide: bool) -> Ve
     let edited = |is: bool| if is { " (tried)" } else { "" };
     vec![
         (format!("pool {pool}{}", edited(changed.pool_m.is_some())), Role::Plain),
-        (format!("| {taken}{age}"), Role::Plain),
+        (format!("| {taken}{}{age}", edited(changed.cast.is_some())), Role::Plain),
         badge,
         (
-            format!("| for {}{}", context.on.format("%Y-%m-%d %H:%M"), edited(changed.on.is_some())),
+            format!(
+                "| for {}{}",
+                context.on.format(if to_the_hour { "%Y-%m-%d %H:%M" } else { day }),
+                edited(changed.on.is_some())
+            ),
             Role::Plain,
         ),
     ]
@@ -189,13 +218,21 @@ fn tabs(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
     put_right(buf, area, area.width, 0, &cut(&words, room), model.look.style(role));
 }
 
+fn is_long(model: &Model, under: &Under) -> bool {
+    (model.clock - under.since).num_milliseconds() >= AT_ONCE_MS
+}
+
+/// Whether what is shown of pool and mix has been waiting for the newer for longer than a moment.
+pub(super) fn is_old(model: &Model) -> bool {
+    model.quick.as_ref().is_some_and(|under| is_long(model, under))
+}
+
 /// What is being computed, or why the newest question has no answer.
 fn status(model: &Model, session: &Session) -> (String, Role) {
-    let long = |under: &&Under| (model.clock - under.since).num_milliseconds() >= AT_ONCE_MS;
-    if model.quick.as_ref().is_some_and(|u| long(&u)) {
+    if is_old(model) {
         return ("computing; what is shown is from before".into(), Role::Warn);
     }
-    if let Some(under) = model.long.as_ref().filter(long) {
+    if let Some(under) = model.long.as_ref().filter(|under| is_long(model, under)) {
         let before = if session.ranked.is_some() { "; what is shown is from before" } else { "" };
         return (format!("ranking {:.0} %{before}, Esc stops", 100.0 * under.done), Role::Warn);
     }

@@ -171,7 +171,10 @@ fn settings(model: &Model, at: usize, area: Rect, buf: &mut Buffer) {
 fn typed(model: &Model, field: &Field, area: Rect, buf: &mut Buffer) -> Position {
     let title = match field.typed {
         Typed::Cell(cell) => super::mix::cell_words(model, cell),
-        Typed::Colder => "volume colder than".into(),
+        Typed::Colder => {
+            let unit = model.system().unit(crate::units::Dimension::Temperature).symbol();
+            format!("volume colder than, {unit}; empty for none")
+        }
         Typed::Release => "total release to rank at".into(),
         Typed::NewSite => "folder of the new site".into(),
     };

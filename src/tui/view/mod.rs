@@ -14,12 +14,13 @@ use ratatui::layout::{Position, Rect};
 
 use crate::problem::harmless;
 use crate::report::text;
-use crate::tasks::Failure;
+use crate::tasks::{Context, Failure};
 use crate::units::System;
 
-use super::model::{Cell, Model, Screen, Session, Stage};
+use super::model::{Cell, Model, Screen, Stage};
 
 pub(super) use lists::help_lines;
+pub(super) use pool::{named as cast_named, scrolled as pool_scrolled, stepped_m as pool_stepped_m};
 
 /// Fewer cells than this and only the main figures are shown.
 const SMALL: (u16, u16) = (72, 20);
@@ -108,12 +109,19 @@ fn failure_words(failure: &Failure, system: System) -> String {
     }
 }
 
-/// The answer of the screen as the command gives it.
-pub(super) fn answer_text(session: &Session) -> Option<String> {
+/// The answer of the screen as the command gives it, in the units shown.
+pub(super) fn answer_text(model: &Model) -> Option<String> {
+    let session = model.session()?;
     let shown = session.shown.as_ref()?;
+    let in_units = |context: &Context| {
+        let mut context = context.clone();
+        context.system = model.system();
+        context
+    };
+    let context = in_units(&shown.on.context);
     match session.screen {
-        Screen::Pool => Some(text::pool(&shown.on.context, &shown.on.pool)),
-        Screen::Mix => Some(text::mix(&shown.on.context, session.tried()?)),
-        Screen::Rank => session.ranked.as_ref().map(|r| text::rank(&r.context, &r.answer)),
+        Screen::Pool => session.pool_shown().map(|(context, answer)| text::pool(&in_units(context), answer)),
+        Screen::Mix => Some(text::mix(&context, session.tried()?)),
+        Screen::Rank => session.ranked.as_ref().map(|r| text::rank(&in_units(&r.context), &r.answer)),
     }
 }

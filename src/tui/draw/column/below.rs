@@ -51,7 +51,7 @@ pub(super) fn cursor(picture: &Picture, layout: &Layout, pen: &mut Pen) {
 /// What the signs mean.
 fn meanings(picture: &Picture, lines: &Lines) -> Vec<String> {
     let present = |state: GateState| picture.gates.iter().any(|g| g.state == state);
-    let signs = GateState::SIGNS.iter().filter(|s| present(s.0));
+    let signs = GateState::SIGNS.iter().filter(|s| present(s.0) && s.1 != ' ');
     let mut out: Vec<String> = signs.map(|(_, sign, words)| format!("{sign} {words}")).collect();
     if !picture.zones.is_empty() {
         out.push("< peak".into());

@@ -16,7 +16,8 @@ const ROWS: usize = 3;
 
 pub(super) fn draw(picture: &Picture, layout: &Layout, pen: &mut Pen) {
     let area = layout.curves;
-    for (own, water) in waters(picture, layout.wide) {
+    let several = picture.overlays.len() > 1;
+    for (number, (own, water)) in (1..).zip(waters(picture, layout.wide)) {
         let stroke = if own { [Stroke::Heavy, Stroke::Thin] } else { [Stroke::Dotted; 2] };
         let marks = if own { ["*", "o"] } else { [",", "."] };
         let mut dots = Dots::new(pen.grain(), usize::from(area.width), usize::from(area.height));
@@ -26,7 +27,12 @@ pub(super) fn draw(picture: &Picture, layout: &Layout, pen: &mut Pen) {
             dots.curve(*curve, stroke[*curve], points, scale, &layout.elevation);
         }
         pen.dots(&dots, area, |curve| (role(curve), marks[curve]));
-        letters(layout, &dots, if own { ["T", "O2"] } else { ["t", "o"] }, pen);
+        let names = match (own, several) {
+            (true, _) => ["T".to_owned(), "O2".to_owned()],
+            (false, false) => ["t".to_owned(), "o".to_owned()],
+            (false, true) => ["t", "o"].map(|letter| format!("{letter}{number}")),
+        };
+        letters(layout, &dots, names.each_ref().map(String::as_str), pen);
     }
 }
 

@@ -107,8 +107,8 @@ pub(super) fn draw(picture: &Picture, layout: &Layout, pen: &mut Pen) {
         let role = match gate.state {
             _ if gate.chosen => Role::Chosen,
             GateState::Drawing => Role::Strong,
-            GateState::OpenNoFlow => Role::Warn,
-            GateState::Shut => Role::Plain,
+            GateState::OpenNoFlow | GateState::Short => Role::Warn,
+            GateState::Shut | GateState::Wet => Role::Plain,
             GateState::Dry | GateState::Out => Role::Quiet,
         };
         let (first, last) = (span.columns.start, span.columns.end - 1);

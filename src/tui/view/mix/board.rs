@@ -261,8 +261,8 @@ impl Board<'_> {
                 (Cell::Release, now, self.flow(total), "", Some(Of::Whole))
             }
             Row::Pool => {
-                let tried = draft.changed.pool_m.unwrap_or(session.base.profile.pool_m);
-                (Cell::Pool, Some(length(session.base.profile.pool_m)), length(tried), "pool", None)
+                let tried = draft.changed.pool_m.unwrap_or(session.own_pool_m());
+                (Cell::Pool, Some(length(session.own_pool_m())), length(tried), "pool", None)
             }
             _ => {
                 let on = draft.changed.on.unwrap_or(session.base.on);

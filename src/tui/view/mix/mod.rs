@@ -47,8 +47,10 @@ fn parts(model: &Model, session: &Session, area: Rect) -> Parts {
     let below = wanted.min(area.height.saturating_sub(LEAST_ABOVE)).min(most);
     let above = area.height - below;
     let board_width = (area.width / 2).max(46).min(area.width);
-    let picture = Rect { width: area.width - board_width, height: above, ..area };
-    let right = Rect { x: area.x + picture.width, width: board_width, height: above, ..area };
+    // a blank column between the two keeps their figures apart
+    let left = area.width - board_width;
+    let picture = Rect { width: left.saturating_sub(1), height: above, ..area };
+    let right = Rect { x: area.x + left, width: board_width, height: above, ..area };
     let rows = u16::try_from(board::lines(session)).unwrap_or(u16::MAX);
     // what is said gets at least four rows; where the board is longer than the rest it scrolls
     let board_height = rows.min(above.saturating_sub(4));
@@ -74,13 +76,30 @@ pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffe
     board::draw(model, session, parts.board, buf);
     said::draw(model, session, parts.said, buf);
     match session.draft().beside {
-        Some(beside) => compare::draw(model, session, beside, parts.picture, buf),
+        Some(beside) => {
+            let (upper, lower) = halves(parts.picture);
+            compare::draw(model, session, beside, upper, buf);
+            if lower.height > 0 {
+                column(&picture(model, session, shown), lower, buf, model.look);
+            }
+        }
         None => column(&picture(model, session, shown), parts.picture, buf, model.look),
     }
     match gauge_pair(model, session) {
         Some(pair) => gauges([&pair[0], &pair[1]], parts.gauges, buf, model.look),
         None => no_release(model, session, parts.gauges, buf),
     }
+}
+
+/// Rows of the comparison where the picture has room below it, and the fewest rows of such a picture.
+const COMPARED: u16 = 15;
+const PICTURED: u16 = 10;
+
+/// Where two tries are compared and, where there is room for it, the picture below.
+fn halves(area: Rect) -> (Rect, Rect) {
+    let upper = if area.height >= COMPARED + PICTURED { COMPARED } else { area.height };
+    let lower = Rect { y: area.y + upper, height: area.height - upper, ..area };
+    (Rect { height: upper, ..area }, lower)
 }
 
 /// Why there is no release to hold against anything.
@@ -101,11 +120,12 @@ pub(super) fn hit(model: &Model, session: &Session, area: Rect, at: Position) ->
     if parts.board.contains(at) {
         return board::cell_at(model, session, parts.board, at).map(Hit::Cell);
     }
-    let shown = session.shown.as_ref().filter(|_| session.draft().beside.is_none())?;
-    if !parts.picture.contains(at) {
+    let shown = session.shown.as_ref()?;
+    let place = if session.draft().beside.is_some() { halves(parts.picture).1 } else { parts.picture };
+    if !place.contains(at) {
         return None;
     }
-    let gate = gate_at(&picture(model, session, shown), parts.picture, at.x, at.y)?;
+    let gate = gate_at(&picture(model, session, shown), place, at.x, at.y)?;
     let cells = Row::Outlet(gate).cells(session.context().site());
     cells.first().copied().map(Hit::Cell)
 }
@@ -166,13 +186,14 @@ fn gauge_pair(model: &Model, session: &Session) -> Option<[Gauge; 2]> {
         }
         _ => None,
     });
-    let noted = |gauge: Gauge| match &at {
-        Some(at) => gauge.noted(at.clone()),
+    let note = if super::frame::is_old(model) { Some("FROM BEFORE, computing".to_owned()) } else { at };
+    let noted = |gauge: Gauge| match &note {
+        Some(note) => gauge.noted(note.clone()),
         None => gauge,
     };
     Some([
         noted(Gauge::temperature(site, system, tried, now, attainable(|r| r.attainable_c))),
-        Gauge::oxygen(site, system, tried, now, attainable(|r| r.attainable_oxygen_mg_l)),
+        noted(Gauge::oxygen(site, system, tried, now, attainable(|r| r.attainable_oxygen_mg_l))),
     ])
 }
 

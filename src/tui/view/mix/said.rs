@@ -8,7 +8,7 @@ use crate::mix::limits::{Check, Of};
 use crate::problem::{Weight, harmless};
 use crate::report::{flags_of, text};
 use crate::tasks::MixAnswer;
-use crate::units::in_system;
+use crate::units::{Dimension, System, in_system, show};
 
 use super::super::super::look::Role;
 use super::super::super::model::{Cell, Model, Session};
@@ -60,11 +60,23 @@ fn lines(model: &Model, session: &Session, width: usize) -> Vec<(String, Role)> 
         let hours = format!("{:.1} crew hours", change.moves.crew_hours);
         say(format!("{}; {hours}", text::moves(context, change, system)), Role::Plain);
     }
+    if let Some(words) = ranked_at(session, answer, system) {
+        say(words, Role::Plain);
+    }
+    if session.draft().changed.targets.is_some() {
+        say("* targets as tried here, not as the site file has them".into(), Role::Warn);
+    }
     for check in chosen(answer, session.mix.cell) {
         let (mark, role) = if check.broken() { ("!", Role::Outside) } else { (" ", Role::Plain) };
         let words = harmless(&in_system(&check.words(site), system));
-        let cure = if check.broken() { format!("; {}", check.cure()) } else { String::new() };
-        say(format!("{mark} {words}{cure}"), role);
+        let rest = if check.broken() {
+            format!("; {}", check.cure())
+        } else {
+            check
+                .spare()
+                .map_or_else(String::new, |spare| format!("; {} to spare", in_system(&spare, system)))
+        };
+        say(format!("{mark} {words}{rest}"), role);
     }
     for problem in flags_of(&answer.mix.warnings) {
         let (mark, role) =
@@ -77,6 +89,16 @@ fn lines(model: &Model, session: &Session, width: usize) -> Vec<(String, Role)> 
         say(format!("not checked: {}", harmless(&answer.mix.not_checked.join("; "))), Role::Plain);
     }
     out
+}
+
+/// That the ranking, and what is attainable, are of another release, where they are.
+fn ranked_at(session: &Session, answer: &MixAnswer, system: System) -> Option<String> {
+    let ranked = session.ranked.as_ref()?;
+    let &[(_, wanted)] = &ranked.answer.blocks[..] else { return None };
+    let set: f64 = answer.setting.gates.iter().map(|g| g.flow_m3s).sum();
+    let digits = u8::from(system == System::Si);
+    let [set, wanted] = [set, wanted].map(|flow| show(flow, Dimension::Flow, system, digits));
+    (set != wanted).then(|| format!("this releases {set}; ranking and attainable are of {wanted}"))
 }
 
 /// Limits of what is chosen.
