@@ -65,9 +65,9 @@ fn parts(screen: &Screen, area: Rect) -> Parts {
     let list = if on_list { rows(list::rows(screen, width).len()).min(left - below) } else { 0 };
     let said = Rect { y: area.y + head + list, height: left - list, ..area };
     let pictured = on_list && !screen.ranked.answer.mixes.is_empty();
-    // a column between what is said and the picture
     let picture = if pictured { area.width / 2 } else { 0 };
-    let gap = u16::from(pictured && picture > 0);
+    // so that a line of the one is not read on into the other
+    let gap = if picture > 0 { 2 } else { 0 };
     Parts {
         head: Rect { height: head, ..area },
         list: Rect { y: area.y + head, height: list, ..area },
