@@ -170,7 +170,10 @@ fn facts(
         || "cast at an unknown time".to_owned(),
         |t| format!("cast {}", t.with_timezone(&site.offset).format(hour)),
     );
-    let age = context.age_days.map_or_else(String::new, |d| format!(", {d:.0} days old"));
+    let age = context.age_days.map_or_else(String::new, |d| {
+        let old = if to_the_hour { " old" } else { "" };
+        format!(", {d:.0} days{old}")
+    });
     let badge = match badge {
         Freshness::Fresh => ("[fresh]".to_owned(), Role::Inside),
         Freshness::Ageing => ("[~ ageing]".to_owned(), Role::Warn),
