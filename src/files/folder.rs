@@ -18,7 +18,7 @@ use inside::inside;
 mod found;
 mod inside;
 
-pub use found::{Found, sites_in, stamps};
+pub use found::{Found, Stamps, sites_in, stamps};
 pub use inside::{demonstration_files, demonstrations};
 
 /// The file that makes a folder a site.

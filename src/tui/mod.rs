@@ -12,7 +12,7 @@ mod work;
 
 pub use keys::{Action, Binding, Place, TABLE};
 pub use look::{Look, Role, Symbols, Theme};
-pub use run::run;
+pub use run::{run, sites, start};
 pub use update::{Effect, Event, begin, places, update};
 pub use view::{Hit, draw as draw_model, hit};
 pub use work::{Anew, Computed, Done, Lane, On, Sent, Work};

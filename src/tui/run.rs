@@ -11,7 +11,7 @@ use std::time::Duration;
 use chrono::Utc;
 use crossterm::event::{Event as TermEvent, poll, read};
 
-use crate::files::folder::{demonstrations, sites_in, stamps};
+use crate::files::folder::{Stamps, demonstrations, sites_in, stamps};
 use crate::files::settings::{self, Settings};
 use crate::problem::Problem;
 use crate::tasks::{self, Asked};
@@ -101,7 +101,7 @@ fn on_terminal(asked: Asked) -> io::Result<()> {
 }
 
 /// What is done first: a list for a folder of sites, else the site.
-fn start(model: &mut Model) -> Vec<Effect> {
+pub fn start(model: &mut Model) -> Vec<Effect> {
     let named = model.asked.site.clone();
     let folder = named.filter(|named| !sites_in(Path::new(named)).is_empty());
     match folder {
@@ -142,12 +142,15 @@ fn wait(arrivals: &Receiver<Arrived>, model: &mut Model, end: &AtomicBool) -> Op
     }
 }
 
+/// What is watched: what was named, and how its files stood.
+type Watched = (String, Stamps);
+
 /// What effects reach.
 struct Outside {
     quick: Worker,
     long: Worker,
     aside: Worker,
-    watched: Arc<Mutex<Option<String>>>,
+    watched: Arc<Mutex<Option<Watched>>>,
     send: Sender<Arrived>,
 }
 
@@ -158,7 +161,8 @@ impl Outside {
             Effect::Ask(generation, work) => self.worker(work.lane()).ask(generation, work),
             Effect::Stop(lane, generation) => self.worker(lane).stop(generation),
             Effect::Watch(named) => {
-                *self.watched.lock().unwrap_or_else(PoisonError::into_inner) = Some(named);
+                let seen = stamps(&named);
+                *self.watched.lock().unwrap_or_else(PoisonError::into_inner) = Some((named, seen));
             }
             Effect::List(folder) => self.answer(Event::Sites(sites(folder.as_deref()))),
             Effect::NewSite(folder, system) => {
@@ -192,8 +196,8 @@ impl Outside {
     }
 }
 
-/// The sites of a folder, then the demonstrations.
-fn sites(folder: Option<&str>) -> Vec<Choice> {
+/// The sites of a folder, of this one where none is named, then the demonstrations.
+pub fn sites(folder: Option<&str>) -> Vec<Choice> {
     let found = sites_in(Path::new(folder.unwrap_or("."))).into_iter().map(|f| Choice {
         name: f.name,
         named: f.path.display().to_string(),
@@ -250,21 +254,24 @@ fn listen(send: Sender<Arrived>, paused: Arc<AtomicBool>) {
 }
 
 /// Looks each second whether the files of the site watched differ from what they were.
-fn watch(watched: &Arc<Mutex<Option<String>>>, send: Sender<Arrived>) {
+fn watch(watched: &Arc<Mutex<Option<Watched>>>, send: Sender<Arrived>) {
     let watched = Arc::clone(watched);
     thread::spawn(move || {
-        let mut last = None;
         loop {
-            let named = watched.lock().unwrap_or_else(PoisonError::into_inner).clone();
-            if let Some(named) = named {
-                let now = (stamps(&named), named);
-                let changed = last.as_ref().is_some_and(|(then, of)| *of == now.1 && *then != now.0);
-                last = Some(now);
-                if changed && send.send(Arrived::Event(Event::FilesChanged)).is_err() {
+            thread::sleep(FILES);
+            // the screens must not wait for a slow disk: it is looked at while nothing is locked
+            let Some(last) = watched.lock().unwrap_or_else(PoisonError::into_inner).clone() else { continue };
+            let now = (last.0.clone(), stamps(&last.0));
+            if now == last {
+                continue;
+            }
+            let mut watched = watched.lock().unwrap_or_else(PoisonError::into_inner);
+            if watched.as_ref() == Some(&last) {
+                *watched = Some(now);
+                if send.send(Arrived::Event(Event::FilesChanged)).is_err() {
                     return;
                 }
             }
-            thread::sleep(FILES);
         }
     });
 }

@@ -32,10 +32,13 @@ pub fn sites_in(path: &Path) -> Vec<Found> {
     sites
 }
 
+/// Files, when each was last written, and its length in bytes.
+pub type Stamps = Vec<(PathBuf, SystemTime, u64)>;
+
 /// When each file that an answer on a site can come from was last written, and its length in bytes: the site file,
 /// sound or not, and every cast of the folder. Two lists differ where a file changed, came or went. Empty for a
 /// demonstration held in memory.
-pub fn stamps(named: &str) -> Vec<(PathBuf, SystemTime, u64)> {
+pub fn stamps(named: &str) -> Stamps {
     let path = Path::new(named);
     if !path.exists() && demonstrations().contains(&named) {
         return Vec::new();

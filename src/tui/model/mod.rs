@@ -120,6 +120,8 @@ pub struct Under {
     pub since: DateTime<Utc>,
     /// How much is done, 0 to 1.
     pub done: f64,
+    /// Whether files are being opened.
+    pub opening: bool,
 }
 
 /// The model.

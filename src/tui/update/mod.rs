@@ -71,10 +71,10 @@ pub enum Effect {
 
 /// Asks for the site the command line names.
 pub fn begin(model: &mut Model) -> Vec<Effect> {
+    // watched first: what changes while it is read is noticed too
+    let watch = model.asked.site.clone().map(Effect::Watch);
     let work = Work::Open(model.asked.clone(), model.clock);
-    let mut effects = vec![ask(model, work)];
-    effects.extend(model.asked.site.clone().map(Effect::Watch));
-    effects
+    watch.into_iter().chain([ask(model, work)]).collect()
 }
 
 /// Opens another site.
@@ -250,7 +250,8 @@ fn complain(model: &mut Model, words: impl Into<String>) {
 fn ask(model: &mut Model, work: Work) -> Effect {
     model.generation += 1;
     let generation = model.generation;
-    *model.under(work.lane()) = Some(Under { generation, since: model.clock, done: 0.0 });
+    let opening = matches!(work, Work::Open(..));
+    *model.under(work.lane()) = Some(Under { generation, since: model.clock, done: 0.0, opening });
     Effect::Ask(generation, work)
 }
 
@@ -299,6 +300,10 @@ fn ask_casts(model: &mut Model) -> Option<Effect> {
 
 /// Asks for every try that has no answer yet.
 fn ask_mixes(model: &mut Model, solve: Option<(Given, f64)>) -> Option<Effect> {
+    // a question now would stop the opening; what is opened asks for every try by itself
+    if model.quick.as_ref().is_some_and(|under| under.opening) {
+        return None;
+    }
     let session = model.session()?;
     let draft = session.draft();
     let same = session.shown.as_ref().filter(|_| session.is_current());

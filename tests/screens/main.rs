@@ -1,0 +1,15 @@
+//! The screens: whole screens as text, a storm of keys, the same numbers as the command, a real terminal.
+
+#![allow(clippy::unwrap_used, reason = "a test stops at its first surprise")]
+
+mod driver;
+mod held;
+mod keys;
+mod numbers;
+#[cfg(unix)]
+mod pty;
+mod screens;
+mod sites;
+mod storm;
+#[cfg(unix)]
+mod terminal;
