@@ -18,9 +18,11 @@ pub(super) fn act(model: &mut Model, action: Action) -> Vec<Effect> {
             read(model, |_| next);
         }
         Action::First => {
-            read(model, |s| s.pool_shown().map(|(context, _)| context.profile.column.surface_m()))
+            read(model, |s| s.pool_shown().map(|(context, _)| context.profile.column.surface_m()));
         }
-        Action::Last => read(model, |s| s.pool_shown().map(|(context, _)| context.profile.column.bed_m())),
+        Action::Last => {
+            read(model, |s| s.pool_shown().map(|(context, _)| context.profile.column.bed_m()));
+        }
         Action::PageUp | Action::PageDown => {
             let scroll = pool_scrolled(model, if action == Action::PageUp { -1 } else { 1 });
             if let Some(session) = model.session_mut() {
@@ -31,7 +33,7 @@ pub(super) fn act(model: &mut Model, action: Action) -> Vec<Effect> {
         Action::After => stepped(model, 1),
         Action::Overlay => laid(model),
         Action::UseCast => return used(model),
-        Action::Undo | Action::Redo => return mix::act(model, action),
+        Action::Undo | Action::Redo => return taken_back(model, action),
         Action::Colder => {
             let unit = model.system().unit(Dimension::Temperature);
             let now = model.session().and_then(|s| s.pool.colder_c);
@@ -41,6 +43,26 @@ pub(super) fn act(model: &mut Model, action: Action) -> Vec<Effect> {
         _ => {}
     }
     Vec::new()
+}
+
+/// Takes the last change back or makes it again, and says so where this screen does not show it.
+fn taken_back(model: &mut Model, action: Action) -> Vec<Effect> {
+    let cast = |model: &Model| model.session().map(|s| s.draft().changed.cast.clone());
+    let before = cast(model);
+    let effects = mix::act(model, action);
+    if model.message.is_none() {
+        let what = if cast(model) == before {
+            "the last change, of another screen,"
+        } else {
+            "the choice of the cast"
+        };
+        let (done, other) = match action {
+            Action::Undo => ("taken back", "r makes it again"),
+            _ => ("made again", "u takes it back"),
+        };
+        say(model, format!("{what} is {done}; {other}"));
+    }
+    effects
 }
 
 /// Reads the water at an elevation; where there is no picture, nothing.

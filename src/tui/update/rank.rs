@@ -55,7 +55,7 @@ pub(super) fn back(model: &mut Model) -> Vec<Effect> {
     effects
 }
 
-/// Takes a ranking; the mix chosen stays chosen where it is in the new one.
+/// Takes a ranking; a mix chosen stays chosen where it is in the new one.
 pub(super) fn ranked(model: &mut Model, ranked: Result<Box<(Arc<Context>, RankAnswer)>, Failure>) {
     let Some(session) = model.session_mut() else { return };
     let (context, answer) = match ranked {
@@ -65,7 +65,9 @@ pub(super) fn ranked(model: &mut Model, ranked: Result<Box<(Arc<Context>, RankAn
             return;
         }
     };
-    let chosen = session.ranked.as_ref().and_then(|r| r.answer.mixes.get(session.rank.at));
+    // who looks at the best looks at the best of the new one
+    let chosen = session.ranked.as_ref().filter(|_| session.rank.at > 0);
+    let chosen = chosen.and_then(|r| r.answer.mixes.get(session.rank.at));
     let again = chosen.and_then(|chosen| answer.mixes.iter().position(|m| stands(m) == stands(chosen)));
     session.rank.at = again.unwrap_or(0);
     session.rank.scroll = 0;

@@ -170,7 +170,10 @@ fn facts(
         || "cast at an unknown time".to_owned(),
         |t| format!("cast {}", t.with_timezone(&site.offset).format(hour)),
     );
-    let age = context.age_days.map_or_else(String::new, |d| format!(", {d:.0} days old"));
+    let age = context.age_days.map_or_else(String::new, |d| {
+        let old = if to_the_hour { " old" } else { "" };
+        format!(", {d:.0} days{old}")
+    });
     let badge = match badge {
         Freshness::Fresh => ("[fresh]".to_owned(), Role::Inside),
         Freshness::Ageing => ("[~ ageing]".to_owned(), Role::Warn),
@@ -230,7 +233,8 @@ pub(super) fn is_old(model: &Model) -> bool {
 /// What is being computed, or why the newest question has no answer.
 fn status(model: &Model, session: &Session) -> (String, Role) {
     if is_old(model) {
-        return ("computing; what is shown is from before".into(), Role::Warn);
+        let before = if session.shown.is_some() { "; what is shown is from before" } else { " ..." };
+        return (format!("computing{before}"), Role::Warn);
     }
     if let Some(under) = model.long.as_ref().filter(|under| is_long(model, under)) {
         let before = if session.ranked.is_some() { "; what is shown is from before" } else { "" };

@@ -186,18 +186,14 @@ fn typed(model: &Model, field: &Field, area: Rect, buf: &mut Buffer) -> Position
     let shown: String = text.chars().skip(scroll).collect();
     row_style(buf, inside, 0, look.style(Role::Field));
     put(buf, inside, 0, 0, &shown, look.style(Role::Field));
-    match &field.wrong {
-        Some(why) => {
-            put(buf, inside, 0, 1, &cut(&format!("! {}", harmless(why)), width), look.style(Role::Outside))
+    let (words, role) = match (&field.wrong, field.typed) {
+        (Some(why), _) => (format!("! {}", harmless(why)), Role::Outside),
+        (None, Typed::Release) => {
+            ("Enter sets it, empty: as the site gives it; Esc leaves it".to_owned(), Role::Quiet)
         }
-        None => {
-            let words = match field.typed {
-                Typed::Release => "Enter sets it, empty: as the site gives it; Esc leaves it",
-                _ => "Enter sets it, Esc leaves it as it was",
-            };
-            put(buf, inside, 0, 1, words, look.style(Role::Quiet))
-        }
+        (None, _) => ("Enter sets it, Esc leaves it as it was".to_owned(), Role::Quiet),
     };
+    put(buf, inside, 0, 1, &cut(&words, width), look.style(role));
     let column = u16::try_from(field.input.visual_cursor().saturating_sub(scroll)).unwrap_or(0);
     Position::new(inside.x + column.min(inside.width.saturating_sub(1)), inside.y)
 }

@@ -64,8 +64,8 @@ pub(super) fn best(context: &Context, best: &Shown, system: System) -> String {
     // without a target and without a setting now there is nothing that puts it first but the fixed order
     let why = if why.is_empty() { String::new() } else { format!(" Why: {}.", why.join("; ")) };
     let mut out = labelled("No. 1", &format!("{}.{why}", set.join("; ")));
-    unsure.iter().for_each(|words| out.push_str(&labelled("Unsure", words)));
-    beware.iter().for_each(|words| out.push_str(&labelled("Beware", words)));
+    out.extend(unsure.iter().map(|words| labelled("Unsure", words)));
+    out.extend(beware.iter().map(|words| labelled("Beware", words)));
     out
 }
 

@@ -180,10 +180,8 @@ fn gauge_pair(model: &Model, session: &Session) -> Option<[Gauge; 2]> {
         },
     };
     let at = session.ranked.as_ref().and_then(|r| match r.answer.blocks[..] {
-        [(_, flow)] => {
-            let drill = if r.answer.without.is_empty() { "" } else { ", drill" };
-            Some(format!("attainable at {}{drill}", show(flow, Dimension::Flow, system, digits(model))))
-        }
+        _ if !r.answer.without.is_empty() => Some("attainable in the drill".to_owned()),
+        [(_, flow)] => Some(format!("attainable at {}", show(flow, Dimension::Flow, system, digits(model)))),
         _ => None,
     });
     let note = if super::frame::is_old(model) { Some("FROM BEFORE, computing".to_owned()) } else { at };

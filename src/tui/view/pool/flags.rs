@@ -48,7 +48,7 @@ pub(super) fn lines(
     refused.chain(flags_of(problems)).flat_map(line).collect()
 }
 
-/// How many flags and notes there are, in words.
+/// How many flags and notes there are, in words; the problems alone where there are any.
 pub(super) fn counted(problems: &[Problem]) -> (String, Role) {
     let of = |weight: Weight, one: &str| {
         let count = problems.iter().filter(|p| p.weight == weight).count();
@@ -62,6 +62,9 @@ pub(super) fn counted(problems: &[Problem]) -> (String, Role) {
         }
     }
     let flags = of(Weight::Flag, "flag").map(|flags| format!("{flags} ({})", kinds.join(", ")));
+    if let Some(refused) = of(Weight::Refused, "problem") {
+        return (format!("x {refused} to be mended"), Role::Outside);
+    }
     let role = if flags.is_some() { Role::Warn } else { Role::Plain };
     match (flags, of(Weight::Note, "note")) {
         (None, None) => ("no flags".into(), role),

@@ -47,12 +47,20 @@ fn row(context: &Context, s: &OutletState, system: System) -> Row {
     Row { name, told: [length(o.centre_m), length(s.submergence_m), state], role, out }
 }
 
+/// Names of outlets side by side.
+fn joined(rows: &[Row]) -> String {
+    rows.iter().map(|r| r.name.as_str()).collect::<Vec<_>>().join(" ")
+}
+
 /// The outlets from the highest down, those alike together.
 pub(super) fn outlets(context: &Context, outlets: &[OutletState], system: System, width: usize) -> Vec<Line> {
     let rows: Vec<Row> = outlets.iter().map(|s| row(context, s, system)).collect();
     let headings = ["centre", "above", "least"];
     let wide = [0, 1, 2].map(|i| column(headings[i], rows.iter().map(|r| &r.told[i])));
-    let names = width.saturating_sub(wide.iter().sum());
+    let alike: Vec<&[Row]> = rows.chunk_by(|a, b| a.told == b.told).collect();
+    let longest = alike.iter().map(|rows| joined(rows).width()).max().unwrap_or(0);
+    // figures far from their names are read off the wrong line
+    let names = width.saturating_sub(wide.iter().sum()).min(longest + 1);
     let figures = |told: [&str; 3]| {
         let [centre, above, state] = told;
         format!("{centre:>0$}{above:>1$}  {state}", wide[0], wide[1])
@@ -61,8 +69,8 @@ pub(super) fn outlets(context: &Context, outlets: &[OutletState], system: System
     if names >= NAMES {
         out.push((format!("{:names$}{}", "", figures(headings)), Role::Quiet));
     }
-    for alike in rows.chunk_by(|a, b| a.told == b.told) {
-        let name = alike.iter().map(|r| r.name.as_str()).collect::<Vec<_>>().join(" ");
+    for alike in alike {
+        let name = joined(alike);
         let Row { told: [centre, above, state], role, .. } = &alike[0];
         if names < NAMES {
             let words = format!("{name}: centre {centre}, water above {above}, {state}");

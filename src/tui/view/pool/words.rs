@@ -1,8 +1,8 @@
 //! What is said beside the picture.
 
-use crate::problem::Problem;
+use crate::problem::{Problem, any_refused};
 use crate::report::text;
-use crate::tasks::{Cast, Freshness, cold_water};
+use crate::tasks::{Cast, Context, Freshness, cold_water};
 use crate::units::{Dimension, System};
 
 use super::super::super::look::Role;
@@ -23,46 +23,42 @@ pub(super) fn head(session: &Session, width: usize) -> Vec<Line> {
         Some(format!("cast {} of {}, ", casts.iter().position(|c| c.file == shown.file)? + 1, casts.len()))
     });
     let place = place.unwrap_or_default();
-    match looked {
-        Some(cast) => {
-            let words = format!("looking at the cast of {}, not the one worked with", named(session, cast));
-            say(&words, Role::Warn);
-        }
-        None => {
-            let taken = match (shown, session.context().profile.taken) {
-                (Some(cast), _) => named(session, cast),
-                (None, Some(taken)) => {
-                    taken.with_timezone(&session.base.site().offset).format("%Y-%m-%d").to_string()
-                }
-                (None, None) => "unknown time".to_owned(),
-            };
-            let newest = match &session.draft().changed.cast {
-                Some(_) => ", chosen; not the newest",
-                None => "",
-            };
-            say(&format!("cast of {taken}, worked with{newest}"), Role::Strong);
-        }
+    if let Some(cast) = looked {
+        let words = format!("looking at the cast of {}, not the one worked with", named(session, cast));
+        say(&words, Role::Warn);
+    } else {
+        let taken = match (shown, session.context().profile.taken) {
+            (Some(cast), _) => named(session, cast),
+            (None, Some(taken)) => {
+                taken.with_timezone(&session.base.site().offset).format("%Y-%m-%d").to_string()
+            }
+            (None, None) => "unknown time".to_owned(),
+        };
+        let chosen = session.draft().changed.cast.is_some();
+        let newest = if chosen { ", chosen; not the newest" } else { "" };
+        say(&format!("cast of {taken}, worked with{newest}"), Role::Strong);
     }
     if session.pool_shown().is_none() {
         say("x cannot be read; nothing is computed on it", Role::Outside);
     }
     let (count, role) = flags::counted(&problems(session));
-    let age = session.pool_shown().map(|(context, _)| {
-        let fresh = Freshness::of(context.site(), context.age_days);
-        let word = match fresh {
-            Freshness::Fresh => "fresh".to_owned(),
-            Freshness::Ageing => "~ ageing".to_owned(),
-            other => format!("! {}", other.word().to_uppercase()),
-        };
-        match context.age_days.filter(|_| looked.is_some()) {
-            Some(days) if days >= 0.0 => format!("{days:.0} days old: {word}; "),
-            _ if looked.is_some() => format!("{word}; "),
-            // the head of every screen says it of the one worked with
-            _ => String::new(),
-        }
-    });
+    // the head of every screen says it of the one worked with
+    let age = looked.and_then(|cast| cast.pool.as_ref()).map(|(context, _)| age(context));
     say(&format!("{place}{}{count}", age.unwrap_or_default()), role);
     out
+}
+
+/// How old a cast is and what that means.
+fn age(context: &Context) -> String {
+    let word = match Freshness::of(context.site(), context.age_days) {
+        Freshness::Fresh => "fresh".to_owned(),
+        Freshness::Ageing => "~ ageing".to_owned(),
+        other => format!("! {}", other.word().to_uppercase()),
+    };
+    match context.age_days.filter(|days| *days >= 0.0) {
+        Some(days) => format!("{days:.0} days old: {word}; "),
+        None => format!("{word}; "),
+    }
 }
 
 /// Everything said of the cast shown.
@@ -121,7 +117,8 @@ pub(super) fn lines(model: &Model, session: &Session, width: usize) -> Vec<Line>
     }
     let problems = problems(session);
     let profile = session.pool_shown().map(|(context, _)| &context.profile);
-    heading(&mut out, "Flags (!) and notes (-)", width);
+    let refused = if any_refused(&problems) { "Problems (x), flags" } else { "Flags" };
+    heading(&mut out, &format!("{refused} (!) and notes (-)"), width);
     if problems.is_empty() {
         say(&mut out, "none", width, Role::Plain);
     }
@@ -142,13 +139,16 @@ fn season(out: &mut Vec<Line>, session: &Session, system: System, width: usize) 
             say(out, "being read ...", width, Role::Quiet);
         }
         (Some(casts), None) => {
-            let broken: Vec<&Cast> = casts.iter().filter(|c| c.pool.is_none()).collect();
+            let looked = session.looked_at().map(|c| &c.file);
+            let broken: Vec<&Cast> =
+                casts.iter().filter(|c| c.pool.is_none() && Some(&c.file) != looked).collect();
+
             if !broken.is_empty() {
                 heading(out, "Casts that cannot be read", width);
                 for cast in broken {
                     say(
                         out,
-                        &format!("x {}; [ ] step to it and tell why", named(session, cast)),
+                        &format!("x {}; step to it with [ ] to read why", named(session, cast)),
                         width,
                         Role::Outside,
                     );

@@ -13,12 +13,11 @@ mod head;
 mod list;
 mod pages;
 mod said;
-mod trade;
 
 use ratatui::buffer::Buffer;
 use ratatui::layout::{Position, Rect};
 
-use super::super::draw::trade::{mix_at, trade};
+use super::super::draw::trade::{TradePicture, mix_at, trade};
 use super::super::look::Role;
 use super::super::model::{Model, Page, Ranked, Session};
 use super::Hit;
@@ -47,6 +46,15 @@ struct Screen<'a> {
     old: bool,
 }
 
+impl Screen<'_> {
+    /// The trade curve, the mix chosen marked.
+    fn picture(&self) -> TradePicture {
+        let ranked = self.ranked;
+        let selected = Some(self.session.rank.at);
+        TradePicture::of(ranked.context.site(), self.model.system(), &ranked.answer, selected)
+    }
+}
+
 fn parts(screen: &Screen, area: Rect) -> Parts {
     let width = usize::from(area.width);
     let rows = |count: usize| u16::try_from(count).unwrap_or(u16::MAX);
@@ -57,9 +65,9 @@ fn parts(screen: &Screen, area: Rect) -> Parts {
     let list = if on_list { rows(list::rows(screen, width).len()).min(left - below) } else { 0 };
     let said = Rect { y: area.y + head + list, height: left - list, ..area };
     let pictured = on_list && !screen.ranked.answer.mixes.is_empty();
-    // a column between what is said and the picture
     let picture = if pictured { area.width / 2 } else { 0 };
-    let gap = u16::from(pictured && picture > 0);
+    // so that a line of the one is not read on into the other
+    let gap = if picture > 0 { 2 } else { 0 };
     Parts {
         head: Rect { height: head, ..area },
         list: Rect { y: area.y + head, height: list, ..area },
@@ -78,24 +86,18 @@ pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffe
     let parts = parts(&screen, area);
     write(&head::lines(&screen, area), parts.head, 0, model, buf);
     list::draw(&screen, parts.list, buf);
-    let lines = scrolled(&screen, parts.said);
-    let last = lines.len().saturating_sub(usize::from(parts.said.height));
+    let (lines, last) = scrolled(&screen, parts.said);
     let from = session.rank.scroll.min(last);
-    write(&lines, parts.said, from, model, buf);
+    let rows = if last > 0 { parts.said.height.saturating_sub(1) } else { parts.said.height };
+    write(&lines, Rect { height: rows, ..parts.said }, from, model, buf);
     if last > 0 && parts.said.height > 0 {
+        // a row of its own: words it covered could turn what they say round
         let below = last - from;
-        let words = if below > 0 { format!(" {below} more, PgDn ") } else { " PgUp ".to_owned() };
-        put_right(
-            buf,
-            parts.said,
-            parts.said.width,
-            parts.said.height - 1,
-            &words,
-            model.look.style(Role::Key),
-        );
+        let words = if below > 0 { format!("{below} more, PgDn ") } else { "the end, PgUp ".to_owned() };
+        put_right(buf, parts.said, parts.said.width, rows, &words, model.look.style(Role::Key));
     }
     if parts.trade.width > 0 {
-        trade(&trade::picture(&screen), parts.trade, buf, model.look);
+        trade(&screen.picture(), parts.trade, buf, model.look);
     }
 }
 
@@ -107,7 +109,7 @@ pub(super) fn hit(model: &Model, session: &Session, area: Rect, at: Position) ->
         return list::mix_at(&screen, parts.list, at).map(Hit::Mix);
     }
     if parts.trade.contains(at) {
-        return mix_at(&trade::picture(&screen), parts.trade, at.x, at.y).map(Hit::Mix);
+        return mix_at(&screen.picture(), parts.trade, at.x, at.y).map(Hit::Mix);
     }
     None
 }
@@ -125,8 +127,7 @@ pub(super) fn in_short(model: &Model, session: &Session, width: usize) -> Lines 
 /// The furthest that what scrolls can be scrolled.
 pub(super) fn last(model: &Model, session: &Session, area: Rect) -> usize {
     let Some(screen) = screen(model, session) else { return 0 };
-    let said = parts(&screen, area).said;
-    scrolled(&screen, said).len().saturating_sub(usize::from(said.height))
+    scrolled(&screen, parts(&screen, area).said).1
 }
 
 fn screen<'a>(model: &'a Model, session: &'a Session) -> Option<Screen<'a>> {
@@ -134,15 +135,19 @@ fn screen<'a>(model: &'a Model, session: &'a Session) -> Option<Screen<'a>> {
     Some(Screen { model, session, ranked, old: !session.ranks_now() })
 }
 
-/// What scrolls.
-fn scrolled(screen: &Screen, area: Rect) -> Lines {
+/// What scrolls, and how far it can be.
+fn scrolled(screen: &Screen, area: Rect) -> (Lines, usize) {
     let width = usize::from(area.width);
-    match screen.session.rank.page {
+    let lines = match screen.session.rank.page {
         Page::List if screen.ranked.answer.mixes.is_empty() => pages::rejected(screen, width),
         Page::List => said::lines(screen, width),
         Page::Rejected => pages::rejected(screen, width),
         Page::Others => pages::others(screen, width),
-    }
+    };
+    let rows = usize::from(area.height);
+    // where not all lines have room, one row tells how many there are
+    let last = if lines.len() > rows { lines.len() - rows.saturating_sub(1) } else { 0 };
+    (lines, last)
 }
 
 fn write(lines: &Lines, area: Rect, from: usize, model: &Model, buf: &mut Buffer) {
