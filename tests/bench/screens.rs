@@ -6,7 +6,11 @@
 //! cargo bench --bench screens
 //! ```
 
-#![allow(clippy::unwrap_used, clippy::print_stdout, reason = "a bench stops at its first surprise and prints")]
+#![allow(
+    clippy::unwrap_used,
+    clippy::print_stdout,
+    reason = "a bench stops at its first surprise and prints"
+)]
 
 #[cfg(unix)]
 #[path = "../screens/terminal.rs"]
@@ -87,7 +91,9 @@ mod measured {
         }
         let (start_ms, start_least) = middle(&mut starts);
         let (key_ms, key_least) = middle(&mut keys);
-        println!("start to the first full screen    {start_ms:6.1} ms (least {start_least:.1}; held: {START_MS})");
+        println!(
+            "start to the first full screen    {start_ms:6.1} ms (least {start_least:.1}; held: {START_MS})"
+        );
         println!("key to the frame with the new mix {key_ms:6.1} ms (least {key_least:.1}; held: {KEY_MS})");
         println!("bytes up to the first full screen {first:6}, after a key {bytes:?}");
         idle(&mut terminal);

@@ -108,7 +108,8 @@ impl Driver {
     /// Answers until nothing is asked any more.
     pub(crate) fn settle(&mut self) {
         // the ranking comes last: what the others tell may ask for it anew
-        let next = |d: &mut Self| [Lane::Quick, Lane::Aside, Lane::Long].into_iter().find_map(|l| d.question(l));
+        let next =
+            |d: &mut Self| [Lane::Quick, Lane::Aside, Lane::Long].into_iter().find_map(|l| d.question(l));
         while let Some(question) = next(self) {
             self.answer(question);
         }

@@ -11,9 +11,8 @@ use crate::driver::Driver;
 use crate::sites::{ground, usual};
 
 const ON: &str = "2026-07-14 11:30";
-/// The screen the numbers are read from, and the column at which its board begins.
+/// The screen the numbers are read from.
 const SIZE: (u16, u16) = (120, 50);
-const BOARD: usize = 60;
 
 /// The answer of a command to what stands on the screens.
 fn answer(driver: &Driver, task: &str, words: &[String]) -> Value {
@@ -124,13 +123,20 @@ fn mix(driver: &mut Driver, shown: &Shown) {
     driver.keys("2");
     let text = driver.text();
     let answer = answer(driver, "mix", &typed(driver));
-    holds(line(&text, "tried"), &gauges(shown, &answer["release"]));
-    if !answer["now"].is_null() {
-        holds(line(&text, "now"), &gauges(shown, &answer["now"]["release"]));
+    // temperature and picture on the left, oxygen and board on the right
+    let half = usize::from(SIZE.0 / 2);
+    let part = |from: usize| {
+        let cells = |l: &str| l.chars().skip(from).take(half).collect::<String>();
+        text.lines().map(cells).collect::<Vec<_>>().join("\n")
+    };
+    let (left, board) = (part(0), part(half));
+    let mut releases = vec![("tried", &answer["release"])];
+    releases.extend(Some(("now", &answer["now"]["release"])).filter(|r| !r.1.is_null()));
+    for (word, release) in releases {
+        let [temperature, oxygen] = gauges(shown, release);
+        holds(line(&left, word), &[temperature]);
+        holds(line(&board, word), &[oxygen]);
     }
-    // the board, right of the picture
-    let board: Vec<String> = text.lines().map(|l| l.chars().skip(BOARD).collect()).collect();
-    let board = board.join("\n");
     for (name, flow) in answer["set"].as_object().unwrap() {
         holds(line(&board, name), &[format!(" {}", shown.flow(flow))]);
     }

@@ -105,6 +105,32 @@ impl Terminal {
         while self.take(Duration::ZERO).is_ok() {}
     }
 
+    /// Waits until more is written than so many bytes.
+    pub(crate) fn wait_for_bytes(&mut self, written: usize) {
+        let begun = Instant::now();
+        while self.bytes.len() <= written {
+            let left = LIMIT.saturating_sub(begun.elapsed());
+            assert!(self.take(left).is_ok(), "nothing was drawn:\n{}", self.text());
+        }
+    }
+
+    /// Sends bytes again and again until the program is gone.
+    pub(crate) fn send_until_end(&mut self, bytes: &str) {
+        let begun = Instant::now();
+        while begun.elapsed() < LIMIT {
+            self.send(bytes);
+            let pushed = Instant::now();
+            while pushed.elapsed() < LIMIT / 10 {
+                if let Err(RecvTimeoutError::Disconnected) = self.take(LIMIT / 10) {
+                    return;
+                }
+                if !self.screen().alternate_screen() {
+                    return;
+                }
+            }
+        }
+    }
+
     /// Waits until the program is gone.
     pub(crate) fn wait_for_end(&mut self) {
         let begun = Instant::now();
