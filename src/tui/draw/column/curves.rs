@@ -17,6 +17,7 @@ const ROWS: usize = 3;
 pub(super) fn draw(picture: &Picture, layout: &Layout, pen: &mut Pen) {
     let area = layout.curves;
     let several = picture.overlays.len() > 1;
+    let mut drawn = Vec::new();
     for (number, (own, water)) in (1..).zip(waters(picture, layout.wide)) {
         let stroke = if own { [Stroke::Heavy, Stroke::Thin] } else { [Stroke::Dotted; 2] };
         let marks = if own { ["*", "o"] } else { [",", "."] };
@@ -32,7 +33,11 @@ pub(super) fn draw(picture: &Picture, layout: &Layout, pen: &mut Pen) {
             (false, false) => ["t".to_owned(), "o".to_owned()],
             (false, true) => ["t", "o"].map(|letter| format!("{letter}{number}")),
         };
-        letters(layout, &dots, names.each_ref().map(String::as_str), pen);
+        drawn.push((dots, names));
+    }
+    // the cast itself first, so that it has the best places; no curve may hide a letter
+    for (dots, names) in drawn.iter().rev() {
+        letters(layout, dots, names.each_ref().map(String::as_str), pen);
     }
 }
 
