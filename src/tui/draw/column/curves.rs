@@ -17,6 +17,7 @@ const ROWS: usize = 3;
 pub(super) fn draw(picture: &Picture, layout: &Layout, pen: &mut Pen) {
     let area = layout.curves;
     let several = picture.overlays.len() > 1;
+    let mut drawn = Vec::new();
     for (number, (own, water)) in (1..).zip(waters(picture, layout.wide)) {
         let stroke = if own { [Stroke::Heavy, Stroke::Thin] } else { [Stroke::Dotted; 2] };
         let marks = if own { ["*", "o"] } else { [",", "."] };
@@ -32,7 +33,11 @@ pub(super) fn draw(picture: &Picture, layout: &Layout, pen: &mut Pen) {
             (false, false) => ["t".to_owned(), "o".to_owned()],
             (false, true) => ["t", "o"].map(|letter| format!("{letter}{number}")),
         };
-        letters(layout, &dots, names.each_ref().map(String::as_str), pen);
+        drawn.push((own, dots, names));
+    }
+    // the cast itself first, so that it has the best places; no curve may hide a letter
+    for (own, dots, names) in drawn.iter().rev() {
+        letters(layout, dots, names.each_ref().map(String::as_str), *own, pen);
     }
 }
 
@@ -57,8 +62,8 @@ fn role(curve: usize) -> Role {
     if curve == OXYGEN { Role::Oxygen } else { Role::Temperature }
 }
 
-/// The letters of the curves, beside their highest and lowest rows.
-fn letters(layout: &Layout, dots: &Dots, letters: [&str; 2], pen: &mut Pen) {
+/// The letters of the curves, beside their highest and lowest rows; where there is no room, over the curve if always.
+fn letters(layout: &Layout, dots: &Dots, letters: [&str; 2], always: bool, pen: &mut Pen) {
     let rows = layout.curves.height;
     for curve in [TEMPERATURE, OXYGEN] {
         let drawn = |row: &u16| reach(layout, dots, curve, *row).is_some();
@@ -69,10 +74,10 @@ fn letters(layout: &Layout, dots: &Dots, letters: [&str; 2], pen: &mut Pen) {
             let places: Vec<(u16, u16)> =
                 near.iter().flat_map(|row| beside(layout, dots, curve, *row, letters[curve])).collect();
             let free = |&&(x, y): &&(u16, u16)| (x..x + cells(letters[curve])).all(|x| pen.blank(x, y));
-            // over the curve itself where there is no room at all
+            // over the curve itself where there is no room at all; that of another cast would cover other letters
             let over =
                 near.first().and_then(|row| Some((reach(layout, dots, curve, *row)?.0, layout.top + row)));
-            if let Some((x, y)) = places.iter().find(free).copied().or(over) {
+            if let Some((x, y)) = places.iter().find(free).copied().or(over.filter(|_| always)) {
                 pen.text(x, y, cells(letters[curve]), letters[curve], role(curve));
             }
         }
