@@ -95,11 +95,10 @@ fn law_every_coefficient_says_how_sure() {
 
 #[test]
 fn law_no_answer_calls_a_release_safe_or_approved() {
-    let caution = gatemix::report::caution();
-    for (file, text) in
-        sources("src/report").into_iter().chain(sources("src/mix")).chain(sources("src/tasks"))
-    {
-        let text = text.replace(caution, "");
+    // the caution is the one place for these words, in each of its lengths
+    let cautions: Vec<&str> = (0..400).map(gatemix::report::caution_within).collect();
+    for (file, text) in ["src/report", "src/mix", "src/tasks", "src/tui"].into_iter().flat_map(sources) {
+        let text = cautions.iter().fold(text, |text, caution| text.replace(caution, ""));
         for word in ["compliant", "legal", "acceptable", "approved", " safe ", "probability", "chance"] {
             assert!(!text.contains(word), "{file} says `{word}`");
         }

@@ -15,6 +15,7 @@ const MARGIN: usize = 9;
 pub(super) fn rejected(screen: &Screen, width: usize) -> Lines {
     let (context, answer, system) = (&screen.ranked.context, &screen.ranked.answer, screen.model.system());
     let mut out = Lines::new();
+    say(&mut out, "What is rejected; x or Esc goes back to the list.", width, 2, Role::Quiet);
     let mut before: Option<Group> = None;
     for told in rank::rejected(context, answer, system) {
         if before != Some(told.group) {
@@ -44,10 +45,13 @@ pub(super) fn rejected(screen: &Screen, width: usize) -> Lines {
 pub(super) fn others(screen: &Screen, width: usize) -> Lines {
     let (context, answer, system) = (&screen.ranked.context, &screen.ranked.answer, screen.model.system());
     let mut out = Lines::new();
-    for (label, words) in rank::answers(context, answer, system) {
+    say(&mut out, "Answers beyond the list; m or Esc goes back to it.", width, 2, Role::Quiet);
+    let answers = rank::answers(context, answer, system);
+    let none = answers.is_empty();
+    for (label, words) in answers {
         labelled(&mut out, label, MARGIN, &words, width, Role::Plain);
     }
-    if out.is_empty() {
+    if none {
         say(&mut out, "No mix is allowed: there is nothing beyond the list.", width, 2, Role::Strong);
     }
     let flags = context.profile.flags.iter().filter(|p| p.weight == Weight::Flag);
