@@ -152,6 +152,8 @@ fn rank(driver: &mut Driver, shown: &Shown) {
     let text = driver.keys("2").text();
     holds(line(&text, "attainable"), &[attainable]);
     let text = driver.keys("3").text();
+    // below the tabs, which are numbered too
+    let list = text.lines().skip(3).collect::<Vec<_>>().join("\n");
     let mixes = answer["mixes"].as_array().unwrap();
     assert_eq!(driver.session().ranked.as_ref().unwrap().answer.mixes.len(), mixes.len());
     for (mix, number) in mixes.iter().zip(1..).take(3) {
@@ -165,7 +167,7 @@ fn rank(driver: &mut Driver, shown: &Shown) {
             Shown::oxygen(&release["oxygen_mg_l"])
         );
         let share = format!(" {:.0}%", 100.0 * mix["share_inside_both"].as_f64().unwrap());
-        let row = line(&text, &format!("{number} "));
+        let row = line(&list, &format!("{number} "));
         holds(&row.split_whitespace().collect::<Vec<_>>().join(" "), &[figures, share]);
     }
 }

@@ -17,7 +17,7 @@ const CTRL_C: &str = "\u{3}";
 
 /// A shell that tells the settings of the terminal before and after the program, and how that ended. The shell lives
 /// through a signal to both.
-const SHELL: &str = r#"trap : TERM INT; stty echo; echo "before $(stty -g)"; "$@"; code=$?; echo "after $(stty -g)"; echo "ended with $code""#;
+const SHELL: &str = r#"trap : TERM INT; stty echo; before=$(stty -g); "$@"; code=$?; echo "before $before"; echo "after $(stty -g)"; echo "ended with $code""#;
 
 /// The program on what its arguments name, with a folder that is its home and gone afterwards.
 struct Run {
@@ -60,7 +60,9 @@ impl Run {
         let between = |from: &str, to: &str| {
             joined.split(from).nth(1).and_then(|rest| rest.split(to).next()).unwrap().to_owned()
         };
-        assert_eq!(between("before ", "after "), between("after ", "ended"), "raw mode is left on");
+        let (before, after) = (between("before ", "after "), between("after ", "ended"));
+        assert!(before.contains(':'), "{text}");
+        assert_eq!(before, after, "raw mode is left on");
     }
 }
 
@@ -113,7 +115,7 @@ fn evening(no_color: bool) {
         text.lines().any(begins) && !text.contains("ranking ")
     });
     terminal.send("\r");
-    terminal.wait_for("no. 1 of the ranking is tried");
+    terminal.wait_for("no. 1 of the ranking is try");
     terminal.wait("another release", |s| {
         let text = s.contents();
         text.lines().any(|l| l.contains("against now")) && !text.contains(changed.trim())

@@ -1,6 +1,8 @@
 //! The built program in a pseudo-terminal: keys go in, bytes come out and are shown as a terminal would.
 //! Everything waits for what is to be seen, with a limit; nothing sleeps.
 
+#![allow(dead_code, reason = "the tests and the bench each use a part")]
+
 use std::io::{Read, Write};
 use std::num::NonZeroU16;
 use std::process::Command;

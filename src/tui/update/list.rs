@@ -76,13 +76,17 @@ fn moved(at: usize, action: Action, count: usize) -> usize {
 fn over(model: &mut Model, action: Action) -> Vec<Effect> {
     let Some(over) = model.over.clone() else { return Vec::new() };
     match (over, action) {
-        (Over::Help(_) | Over::Settings(_) | Over::Order(_) | Over::Drill(_), Action::Back)
-        | (Over::Help(_) | Over::Order(_) | Over::Drill(_), Action::Enter) => model.over = None,
+        (
+            Over::Help(_) | Over::Settings(_) | Over::Order(_) | Over::Drill(_),
+            Action::Back | Action::Enter,
+        ) => {
+            model.over = None;
+        }
         (Over::Help(at), _) => {
             let lines = super::super::view::help_lines();
             model.over = Some(Over::Help(moved(at, action, lines)));
         }
-        (Over::Settings(at), Action::Toggle | Action::More | Action::Enter) => {
+        (Over::Settings(at), Action::Toggle | Action::More) => {
             turn(&mut model.likes, at, true);
             return settled(model);
         }

@@ -231,15 +231,16 @@ pub(super) fn problems(
     let again = if kept { "your tries are kept" } else { "it opens by itself" };
     let words = format!("{count} to be mended; when the files are, {again}:");
     put(buf, area, 0, 0, &words, look.style(Role::Plain));
+    let width = usize::from(area.width).saturating_sub(4);
+    let texts: Vec<Vec<String>> = problems.iter().map(|p| wrapped(&p.text(system), width, 2)).collect();
     let mut row = 1;
-    for problem in problems.iter().skip(scroll) {
+    for (problem, lines) in problems.iter().zip(&texts).skip(scroll.min(last_page(&texts, area.height))) {
         let (mark, role) = match problem.weight {
             Weight::Refused => ("x", Role::Outside),
             Weight::Flag => ("!", Role::Warn),
             Weight::Note => ("-", Role::Plain),
         };
-        let text = problem.text(system);
-        for (i, line) in wrapped(&text, usize::from(area.width).saturating_sub(4), 2).iter().enumerate() {
+        for (i, line) in lines.iter().enumerate() {
             if i == 0 {
                 put(buf, area, 0, row, mark, look.style(role));
             }
@@ -250,4 +251,17 @@ pub(super) fn problems(
             return;
         }
     }
+}
+
+/// The first of some texts from which all that follow fit below a heading: nothing scrolls away that could stay.
+fn last_page(texts: &[Vec<String>], height: u16) -> usize {
+    let mut left = usize::from(height.saturating_sub(1));
+    let fits = texts.iter().rev().take_while(|lines| {
+        let fits = lines.len() <= left;
+        left = left.saturating_sub(lines.len());
+        fits
+    });
+    let fits = fits.count();
+    // the last is always to be seen
+    (texts.len() - fits).min(texts.len().saturating_sub(1))
 }

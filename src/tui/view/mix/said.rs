@@ -18,15 +18,18 @@ use super::super::write::{put, put_right, wrapped};
 /// Draws what is said.
 pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
     let lines = lines(model, session, usize::from(area.width));
-    let last = lines.len().saturating_sub(usize::from(area.height));
+    let scrolls = lines.len() > usize::from(area.height) && area.height > 1;
+    // what is left has a row of its own: beside words it would read as one of their figures
+    let shown = if scrolls { area.height - 1 } else { area.height };
+    let last = lines.len().saturating_sub(usize::from(shown));
     let from = session.mix.scroll.min(last);
-    for (row, (line, role)) in (0..area.height).zip(lines.iter().skip(from)) {
+    for (row, (line, role)) in (0..shown).zip(lines.iter().skip(from)) {
         put(buf, area, 0, row, line, model.look.style(*role));
     }
-    if last > 0 && area.height > 0 {
+    if scrolls {
         let below = last - from;
-        let words = if below > 0 { format!(" {below} more, PgDn ") } else { " PgUp ".to_owned() };
-        put_right(buf, area, area.width, area.height - 1, &words, model.look.style(Role::Key));
+        let words = if below > 0 { format!("{below} more lines, PgDn") } else { "PgUp".to_owned() };
+        put_right(buf, area, area.width, shown, &words, model.look.style(Role::Key));
     }
 }
 
