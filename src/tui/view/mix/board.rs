@@ -39,20 +39,33 @@ pub(super) fn lines(session: &Session) -> usize {
     rows(context.site(), context.on.date_naive()).len() + 1
 }
 
-/// Rows shown and the first of them.
+/// Rows shown, and how many are not. Where they do not all fit the total release stays in sight, last, since every
+/// turn of a gate may change it.
 fn shown_rows(session: &Session, area: Rect) -> (Vec<Row>, usize) {
     let context = session.context();
     let rows = rows(context.site(), context.on.date_naive());
+    let height = area.height.saturating_sub(1);
     let at = rows.iter().position(|r| *r == session.mix.cell.row()).unwrap_or(0);
-    let from = first_line(at, rows.len(), area.height.saturating_sub(1));
-    (rows, from)
+    let window = |height: u16| -> Vec<Row> {
+        let from = first_line(at, rows.len(), height);
+        rows.iter().copied().skip(from).take(usize::from(height)).collect()
+    };
+    let mut shown = window(height);
+    if height > 2 && !shown.contains(&Row::Release) {
+        shown = window(height - 1);
+        if !shown.contains(&Row::Release) {
+            shown.push(Row::Release);
+        }
+    }
+    let hidden = rows.len().saturating_sub(shown.len());
+    (shown, hidden)
 }
 
 /// The cell at a place.
 pub(super) fn cell_at(_model: &Model, session: &Session, area: Rect, at: Position) -> Option<Cell> {
-    let (rows, from) = shown_rows(session, area);
+    let (rows, _) = shown_rows(session, area);
     let line = usize::from(at.y.checked_sub(area.y + 1)?);
-    let row = rows.get(from + line)?;
+    let row = rows.get(line)?;
     let cells = row.cells(session.context().site());
     let columns = columns(area.width);
     let places = places(*row, &columns, area.width);
@@ -89,13 +102,10 @@ pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffe
     put(buf, area, c.room, 0, "limits", quiet);
     let now = now_setting(session.context()).ok().map(|u| u.setting);
     let board = Board { model, session, now, c };
-    let (rows, from) = shown_rows(session, area);
-    let mut drawn = 0;
-    for (line, row) in (1..area.height).zip(rows.iter().skip(from)) {
+    let (rows, hidden) = shown_rows(session, area);
+    for (line, row) in (1..area.height).zip(&rows) {
         board.row(*row, area, line, buf);
-        drawn += 1;
     }
-    let hidden = rows.len().saturating_sub(drawn);
     if hidden > 0 {
         put_right(buf, area, area.width, 0, &format!("{hidden} more rows"), quiet);
     }
