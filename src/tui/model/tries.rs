@@ -187,3 +187,6 @@ fn by_flows(site: &Site, given: &mut Given, well: usize, split: Option<&Setting>
         given.flows.push(ByFlow { outlet: *outlet, flow_m3s, opening: Some(*opening) });
     }
 }
+
+#[cfg(test)]
+mod tests;
