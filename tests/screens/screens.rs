@@ -192,7 +192,10 @@ fn scenario_what_is_chosen_is_reversed_and_marked_with_and_without_colour() {
         let buffer = driver.theme(theme).buffer();
         let reversed = |y: u16| {
             let cells = (0..buffer.area.width).map(|x| &buffer[(x, y)]);
-            cells.filter(|c| c.modifier.contains(Modifier::REVERSED)).map(|c| c.symbol()).collect::<String>()
+            cells
+                .filter(|c| c.modifier.contains(Modifier::REVERSED))
+                .map(ratatui::buffer::Cell::symbol)
+                .collect::<String>()
         };
         assert!(reversed(2).contains("[2 mix]"), "{:?}", reversed(2));
         // the cell chosen is reversed on the board, its gate in the picture

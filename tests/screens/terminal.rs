@@ -39,7 +39,7 @@ impl Terminal {
         let (mut reader, keys) = (process.open_stream().unwrap(), process.open_stream().unwrap());
         let (send, output) = channel();
         thread::spawn(move || {
-            let mut buffer = [0; 65536];
+            let mut buffer = vec![0; 65536];
             while let Ok(count @ 1..) = reader.read(&mut buffer) {
                 if send.send(buffer[..count].to_vec()).is_err() {
                     return;
