@@ -15,14 +15,15 @@ pub fn caution() -> &'static str {
 
 /// The longest form of the caution that one line of so many cells holds; the shortest where none fits.
 pub fn caution_within(cells: usize) -> &'static str {
-    const SHORTER: [&str; 4] = [
+    const SHORTER: [&str; 5] = [
         "Advisory estimate: the dam-safety authority and the approved water control plan rule; a licensed engineer decides.",
         "Advisory: dam safety and water control plan rule; a licensed engineer decides.",
-        "Advisory: dam safety rules, a licensed engineer decides.",
-        "Advisory; dam safety rules.",
+        "Advisory: dam safety comes first; an engineer decides.",
+        "Advisory; an engineer decides.",
+        "Advisory estimate",
     ];
     let fits = |text: &&str| text.chars().count() <= cells;
-    std::iter::once(caution()).chain(SHORTER).find(fits).unwrap_or(SHORTER[3])
+    std::iter::once(caution()).chain(SHORTER).find(fits).unwrap_or(SHORTER[4])
 }
 
 /// Flags and notes of a list, flags first, each in the order it was found.
