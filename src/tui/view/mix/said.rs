@@ -41,6 +41,9 @@ fn lines(model: &Model, session: &Session, width: usize) -> Vec<(String, Role)> 
         let lines = wrapped(&text, width, 2);
         out.extend(lines.into_iter().map(|l| (l, role)));
     };
+    if let Some(failure) = &session.wrong {
+        say(format!("! no answer to the last change: {}", failure_words(failure, system)), Role::Outside);
+    }
     let answer = match session.answer(session.draft().at) {
         Some(Ok(answer)) => answer,
         Some(Err(failure)) => {
@@ -62,6 +65,9 @@ fn lines(model: &Model, session: &Session, width: usize) -> Vec<(String, Role)> 
     if let Some(change) = &answer.change {
         let hours = format!("{:.1} crew hours", change.moves.crew_hours);
         say(format!("{}; {hours}", text::moves(context, change, system)), Role::Plain);
+    }
+    if answer.day.is_some() {
+        say("this is the day's longest block; targets are judged over the day".into(), Role::Warn);
     }
     if let Some(words) = ranked_at(session, answer, system) {
         say(words, Role::Plain);
