@@ -122,7 +122,8 @@ proptest! {
 #[test]
 fn scenario_the_total_of_a_well_waits_for_its_gates() {
     let site = site();
-    let (north, n3, n4) = (site.well("North").unwrap(), site.outlet("N3").unwrap(), site.outlet("N4").unwrap());
+    let (north, n3, n4) =
+        (site.well("North").unwrap(), site.outlet("N3").unwrap(), site.outlet("N4").unwrap());
     let mut given = Given::default();
     set_opening(&site, &mut given, n3, 1.0);
     set_total(&site, &mut given, north, 17.0);
