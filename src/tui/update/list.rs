@@ -90,7 +90,7 @@ fn over(model: &mut Model, action: Action) -> Vec<Effect> {
             model.over = None;
         }
         (Over::Help(at), _) => {
-            let lines = super::super::view::help_lines();
+            let lines = super::super::view::help_lines(model.size.1);
             model.over = Some(Over::Help(moved(at, action, lines)));
         }
         (Over::Settings(at), Action::Toggle | Action::More) => {

@@ -12,7 +12,7 @@ use super::super::model::{
     Cell, Draft, Field, Model, Nudge, Over, Session, Typed, Value, asked, set_flow, set_opening, set_release,
     set_total, total_m3s,
 };
-use super::{Effect, ask_mixes, change, complain, recompute, say};
+use super::{Effect, ask_mixes, change, complain, mix_rows, recompute, say};
 
 /// Step of a flow and a large one, in the unit shown: cfs and m3/s (choice).
 const FLOW: [(f64, f64); 2] = [(10.0, 100.0), (0.5, 5.0)];
@@ -26,6 +26,8 @@ const OXYGEN: (f64, f64) = (0.5, 2.0);
 const OPENING: (f64, f64) = (5.0, 25.0);
 /// The same of the date, days.
 const DAYS: (u64, u64) = (1, 7);
+/// Lines of a page of what is said (choice).
+const PAGE: usize = 3;
 /// Most tries kept side by side (choice).
 pub(super) const TRIES: usize = 9;
 
@@ -81,9 +83,10 @@ fn chosen(model: &mut Model, down: isize, right: isize) -> Vec<Effect> {
 }
 
 fn scrolled(model: &mut Model, down: bool) -> Vec<Effect> {
+    let last = mix_rows(model);
     if let Some(session) = model.session_mut() {
-        let scroll = &mut session.mix.scroll;
-        *scroll = if down { scroll.saturating_add(5) } else { scroll.saturating_sub(5) };
+        let at = session.mix.scroll.min(last);
+        session.mix.scroll = if down { (at + PAGE).min(last) } else { at.saturating_sub(PAGE) };
     }
     Vec::new()
 }

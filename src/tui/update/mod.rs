@@ -19,7 +19,7 @@ use crate::units::System;
 
 use super::keys::{Action, Place, action};
 use super::model::{Choice, Draft, Likes, Message, Model, Over, Screen, Session, Stage, Under};
-use super::view::{answer_text, rank_rows};
+use super::view::{answer_text, mix_rows, rank_rows};
 use super::work::{Lane, On, Sent, Work};
 
 /// A message.

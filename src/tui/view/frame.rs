@@ -15,7 +15,7 @@ use ratatui::layout::{Position, Rect};
 use unicode_width::UnicodeWidthStr;
 
 use crate::problem::harmless;
-use crate::report::caution_within;
+use crate::report::{caution_within, days};
 use crate::tasks::{Context, Freshness};
 use crate::units::{Dimension, System, show};
 
@@ -172,7 +172,7 @@ fn facts(
     );
     let age = context.age_days.map_or_else(String::new, |d| {
         let old = if to_the_hour { " old" } else { "" };
-        format!(", {d:.0} days{old}")
+        format!(", {}{old}", days(d))
     });
     let badge = match badge {
         Freshness::Fresh => ("[fresh]".to_owned(), Role::Inside),

@@ -98,6 +98,12 @@ pub(super) fn rank_rows(model: &Model) -> usize {
     model.session().map_or(0, |session| rank::last(model, session, frame::parts(model, area).body))
 }
 
+/// The furthest that what is said on the mix screen can be scrolled.
+pub(super) fn mix_rows(model: &Model) -> usize {
+    let area = Rect::new(0, 0, model.size.0, model.size.1);
+    model.session().map_or(0, |session| mix::last_line(model, session, frame::parts(model, area).body))
+}
+
 /// Why there is no answer, in one sentence.
 fn failure_words(failure: &Failure, system: System) -> String {
     match failure {

@@ -62,6 +62,11 @@ fn parts(model: &Model, session: &Session, area: Rect) -> Parts {
     }
 }
 
+/// The last line that what is said scrolls to.
+pub(super) fn last_line(model: &Model, session: &Session, area: Rect) -> usize {
+    said::last(model, session, parts(model, session, area).said)
+}
+
 /// Draws the mix screen.
 pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
     let Some(shown) = &session.shown else {
