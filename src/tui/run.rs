@@ -58,6 +58,8 @@ fn on_terminal(asked: Asked) -> io::Result<()> {
     let (kept, problems) = settings::load();
     let likes = likes(&kept);
     let (send, arrivals) = channel();
+    // before the terminal is taken: a signal then must not leave it taken
+    let end = signals()?;
     let mut taken = Taken::take(!likes.no_mouse)?;
     let mut model = Model::new(asked, likes, terminal::colours(), taken.size(), Utc::now());
     model.message = problems.first().map(|p| Message { words: p.text(System::default()), wrong: true });
@@ -74,7 +76,6 @@ fn on_terminal(asked: Asked) -> io::Result<()> {
     };
     watch(&outside.watched, send.clone());
     let paused = Arc::new(AtomicBool::new(false));
-    let end = signals()?;
     listen(send, Arc::clone(&paused));
     let mut effects = start(&mut model);
     loop {
@@ -83,6 +84,9 @@ fn on_terminal(asked: Asked) -> io::Result<()> {
                 paused.store(true, Ordering::Relaxed);
                 taken.suspend()?;
                 paused.store(false, Ordering::Relaxed);
+                // the size may be another by now, and nobody told
+                let (columns, rows) = taken.size();
+                outside.answer(Event::Resize(columns, rows));
             } else if outside.perform(effect, &mut taken)? {
                 return Ok(());
             }

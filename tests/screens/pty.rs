@@ -19,6 +19,9 @@ const CTRL_C: &str = "\u{3}";
 /// through a signal to both.
 const SHELL: &str = r#"trap : TERM INT; stty echo; before=$(stty -g); "$@"; code=$?; echo "before $before"; echo "after $(stty -g)"; echo "ended with $code""#;
 
+/// A shell with job control: the program stops, a line goes to the shell, the program goes on.
+const JOBS: &str = r#"set -m; stty echo; before=$(stty -g); "$@"; echo "stopped as"; jobs -p; echo "raw mode $(test "$before" = "$(stty -g)" && echo gone)"; read line; fg >/dev/null; code=$?; echo "before $before"; echo "after $(stty -g)"; echo "ended with $code""#;
+
 /// The program on what its arguments name, with a folder that is its home and gone afterwards.
 struct Run {
     home: TempDir,
@@ -31,8 +34,12 @@ impl Run {
     }
 
     fn at_home(home: TempDir, arguments: &[&str], no_color: bool, size: (u16, u16)) -> Self {
+        Self::in_shell(SHELL, home, arguments, no_color, size)
+    }
+
+    fn in_shell(shell: &str, home: TempDir, arguments: &[&str], no_color: bool, size: (u16, u16)) -> Self {
         let mut command = Command::new("sh");
-        command.args(["-c", SHELL, "sh", env!("CARGO_BIN_EXE_gatemix")]).args(arguments);
+        command.args(["-c", shell, "sh", env!("CARGO_BIN_EXE_gatemix")]).args(arguments);
         command.current_dir(home.path()).env("HOME", home.path()).env("XDG_CONFIG_HOME", home.path());
         command.env("TERM", "xterm-256color").env_remove("COLORTERM").env("LC_ALL", "C.UTF-8");
         if no_color {
@@ -155,6 +162,47 @@ fn scenario_ctrl_c_quits_while_something_is_typed() {
     run.terminal.send("\r");
     run.terminal.wait_for("Enter sets it");
     run.terminal.send(CTRL_C);
+    run.ended();
+}
+
+#[test]
+fn scenario_ctrl_z_gives_the_terminal_to_the_shell_and_coming_back_finds_everything_as_it_was() {
+    let mut run = Run::in_shell(JOBS, tempfile::tempdir().unwrap(), &[], false, (120, 40));
+    let terminal = &mut run.terminal;
+    terminal.wait_for("[1 pool]");
+    terminal.send("2");
+    terminal.wait_for("the setting now");
+    terminal.send(&DOWN.repeat(5));
+    terminal.send(RIGHT);
+    terminal.send("\r");
+    terminal.wait_for("flow of N3");
+    terminal.send("200\r");
+    terminal.wait_for("colder");
+    let told = line_with(terminal, "against now");
+    let begin = told.find("against now").unwrap();
+    let tried = &told[begin..told.find("colder").unwrap()];
+    terminal.send("\u{1a}");
+    terminal.wait("the shell", |s| !s.alternate_screen() && s.contents().contains("raw mode"));
+    let screen = terminal.screen();
+    assert!(!screen.hide_cursor() && !screen.bracketed_paste(), "{}", terminal.text());
+    assert_eq!(screen.mouse_protocol_mode(), MouseProtocolMode::None);
+    terminal.wait_for("raw mode gone");
+    if cfg!(target_os = "linux") {
+        let text = terminal.text();
+        let pid = text.lines().skip_while(|l| !l.starts_with("stopped as")).nth(1).unwrap().trim();
+        let stat = fs::read_to_string(format!("/proc/{pid}/stat"));
+        // proc(5): the state follows the name in brackets
+        assert!(stat.unwrap().contains("(gatemix) T "), "it is not stopped");
+    }
+    // while it was away the terminal became smaller
+    terminal.resize((100, 30));
+    terminal.send("\n");
+    terminal.wait("the screens", |s| s.alternate_screen() && s.contents().contains("[2 mix]"));
+    terminal.wait_for(tried);
+    assert!(terminal.screen().hide_cursor() && terminal.screen().bracketed_paste());
+    terminal.send("1");
+    terminal.wait_for("[1 pool]");
+    terminal.send("q");
     run.ended();
 }
 
