@@ -200,18 +200,17 @@ impl Outside {
     }
 }
 
-/// The sites of a folder, of this one where none is named, then the demonstrations.
+/// The sites of a folder, of this one where none is named, then the demonstrations that can be opened by name.
 pub fn sites(folder: Option<&str>) -> Vec<Choice> {
     let found = sites_in(Path::new(folder.unwrap_or("."))).into_iter().map(|f| Choice {
         name: f.name,
         named: f.path.display().to_string(),
         demonstration: false,
     });
-    let inside = demonstrations().into_iter().map(|name| Choice {
-        name: name.to_owned(),
-        named: name.to_owned(),
-        demonstration: true,
-    });
+    // what is there on disk is opened in place of a demonstration of its name
+    let free = demonstrations().into_iter().filter(|name| !Path::new(name).exists());
+    let inside =
+        free.map(|name| Choice { name: name.to_owned(), named: name.to_owned(), demonstration: true });
     found.chain(inside).collect()
 }
 

@@ -243,6 +243,26 @@ fn scenario_settings_outlive_the_program() {
 }
 
 #[test]
+fn scenario_a_demonstration_hidden_by_a_folder_of_its_name_is_not_listed() {
+    let home = tempfile::tempdir().unwrap();
+    fs::create_dir_all(home.path().join("ashlar")).unwrap();
+    fs::create_dir_all(home.path().join("dam/profiles")).unwrap();
+    fs::write(home.path().join("dam/site.yaml"), SITE).unwrap();
+    let listed = |home: TempDir| {
+        let mut run = Run::at_home(home, &["."], false, (100, 30));
+        run.terminal.wait_for("dam");
+        let text = run.terminal.text();
+        run.terminal.send("q");
+        run.ended();
+        (text.contains("ashlar"), run.home)
+    };
+    let (there, home) = listed(home);
+    assert!(!there, "it would open the folder");
+    fs::remove_dir(home.path().join("ashlar")).unwrap();
+    assert!(listed(home).0, "nothing hides it");
+}
+
+#[test]
 fn scenario_a_storm_of_keys_with_resizes_ends_with_the_terminal_given_back() {
     let home = tempfile::tempdir().unwrap();
     let folder = home.path().join("dam");
