@@ -2,6 +2,7 @@
 
 pub mod draw;
 mod keys;
+mod likes;
 mod look;
 pub mod model;
 mod run;

@@ -12,13 +12,13 @@ use chrono::Utc;
 use crossterm::event::{Event as TermEvent, poll, read};
 
 use crate::files::folder::{Stamps, demonstrations, sites_in, stamps};
-use crate::files::settings::{self, Settings};
+use crate::files::settings;
 use crate::problem::Problem;
 use crate::tasks::{self, Asked};
 use crate::units::System;
 
-use super::look::{Look, Symbols, Theme};
-use super::model::{Choice, Likes, Message, Model, Stage};
+use super::likes::Kept;
+use super::model::{Choice, Message, Model, Stage};
 use super::terminal::{self, Taken};
 use super::update::{Effect, Event, begin, update};
 use super::view::draw;
@@ -55,14 +55,18 @@ pub fn run(asked: Asked) -> Result<(), Problem> {
 }
 
 fn on_terminal(asked: Asked) -> io::Result<()> {
-    let (kept, problems) = settings::load();
-    let likes = likes(&kept);
+    let (words, mut problems) = settings::load();
+    let file = settings::path().map(|path| path.display().to_string()).unwrap_or_default();
+    let (kept, unknown) = Kept::of(words, terminal::symbols(), &file);
+    problems.extend(unknown);
+    let likes = kept.likes;
     let (send, arrivals) = channel();
     // before the terminal is taken: a signal then must not leave it taken
     let end = signals()?;
     let mut taken = Taken::take(!likes.no_mouse)?;
     let mut model = Model::new(asked, likes, terminal::colours(), taken.size(), Utc::now());
-    model.message = problems.first().map(|p| Message { words: p.text(System::default()), wrong: true });
+    let said: Vec<String> = problems.iter().map(|p| p.text(System::default())).collect();
+    model.message = (!said.is_empty()).then(|| Message { words: said.join("; "), wrong: true });
     let worker = |send: &Sender<Arrived>| {
         let send = send.clone();
         Worker::start(move |sent| _ = send.send(Arrived::Event(Event::Sent(sent))))
@@ -71,6 +75,7 @@ fn on_terminal(asked: Asked) -> io::Result<()> {
         quick: worker(&send),
         long: worker(&send),
         aside: worker(&send),
+        kept,
         watched: Arc::default(),
         send: send.clone(),
     };
@@ -154,6 +159,7 @@ struct Outside {
     quick: Worker,
     long: Worker,
     aside: Worker,
+    kept: Kept,
     watched: Arc<Mutex<Option<Watched>>>,
     send: Sender<Arrived>,
 }
@@ -176,7 +182,7 @@ impl Outside {
             Effect::Copy(text) => taken.copy(&text)?,
             Effect::Keep(likes) => {
                 taken.mouse(!likes.no_mouse)?;
-                if let Err(problem) = settings::save(&kept(likes)) {
+                if let Err(problem) = settings::save(&self.kept.words(likes)) {
                     self.answer(Event::Said(problem));
                 }
             }
@@ -277,30 +283,4 @@ fn watch(watched: &Arc<Mutex<Option<Watched>>>, send: Sender<Arrived>) {
             }
         }
     });
-}
-
-/// What the settings of the user mean.
-fn likes(kept: &Settings) -> Likes {
-    let symbols = Symbols::NAMES.iter().find(|n| Some(n.0) == kept.symbols.as_deref());
-    let theme = Theme::NAMES.iter().find(|n| Some(n.0) == kept.theme.as_deref());
-    Likes {
-        units: match kept.units.as_deref() {
-            Some("us") => Some(System::Us),
-            Some("si") => Some(System::Si),
-            _ => None,
-        },
-        look: Look {
-            symbols: symbols.map_or_else(terminal::symbols, |n| n.1),
-            theme: theme.map_or_else(Theme::default, |n| n.1),
-        },
-        no_mouse: kept.mouse == Some(false),
-    }
-}
-
-/// The words in which they are kept.
-fn kept(likes: Likes) -> Settings {
-    let symbols = Symbols::NAMES.iter().find(|n| n.1 == likes.look.symbols).map(|n| n.0.to_owned());
-    let theme = Theme::NAMES.iter().find(|n| n.1 == likes.look.theme).map(|n| n.0.to_owned());
-    let units = likes.units.map(|u| if u == System::Us { "us" } else { "si" }.to_owned());
-    Settings { units, symbols, theme, mouse: Some(!likes.no_mouse) }
 }

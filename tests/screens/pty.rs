@@ -243,6 +243,39 @@ fn scenario_settings_outlive_the_program() {
 }
 
 #[test]
+fn scenario_settings_that_cannot_be_read_are_told_and_not_written_over() {
+    let home = tempfile::tempdir().unwrap();
+    let file = home.path().join("gatemix/settings.yaml");
+    fs::create_dir_all(file.parent().unwrap()).unwrap();
+    let broken = "units: us\ntheme: [mono\n";
+    fs::write(&file, broken).unwrap();
+    let mut run = Run::at_home(home, &[], false, (200, 24));
+    run.terminal.wait_for("settings.yaml:");
+    run.terminal.send(",  ");
+    run.terminal.wait_for("cannot be written over");
+    run.terminal.send(CTRL_C);
+    run.ended();
+    assert_eq!(fs::read_to_string(file).unwrap(), broken);
+}
+
+#[test]
+fn scenario_a_word_of_the_settings_it_does_not_know_is_told_and_left_alone() {
+    let home = tempfile::tempdir().unwrap();
+    let file = home.path().join("gatemix/settings.yaml");
+    fs::create_dir_all(file.parent().unwrap()).unwrap();
+    fs::write(&file, "theme: dark\n").unwrap();
+    let mut run = Run::at_home(home, &[], false, (200, 24));
+    run.terminal.wait_for("settings.yaml: flag: theme: ");
+    run.terminal.wait_for("`dark`");
+    run.terminal.send(", ");
+    run.terminal.wait_for("kept for the next time");
+    run.terminal.send(CTRL_C);
+    run.ended();
+    let kept = fs::read_to_string(file).unwrap();
+    assert!(kept.ends_with("\nunits: us\ntheme: dark\n"), "{kept}");
+}
+
+#[test]
 fn scenario_a_demonstration_hidden_by_a_folder_of_its_name_is_not_listed() {
     let home = tempfile::tempdir().unwrap();
     fs::create_dir_all(home.path().join("ashlar")).unwrap();
