@@ -11,22 +11,24 @@ use std::time::Duration;
 use chrono::Utc;
 use crossterm::event::{Event as TermEvent, poll, read};
 
-use crate::files::folder::{Stamps, demonstrations, sites_in, stamps};
+use crate::files::folder::{demonstrations, sites_in, stamps};
 use crate::files::settings;
 use crate::problem::Problem;
 use crate::tasks::{self, Asked};
 use crate::units::System;
 
+use super::errands::Errands;
 use super::likes::Kept;
 use super::model::{Choice, Message, Model, Stage};
 use super::terminal::{self, Taken};
 use super::update::{Effect, Event, begin, update};
 use super::view::draw;
-use super::work::{Lane, Worker};
+use super::work::{Lane, Seen, Worker};
 
-/// How long the keyboard is listened to at a time.
+/// How long the keyboard is listened to at a time (choice: the longest wait before the keys go to a shell).
 const LISTEN: Duration = Duration::from_millis(200);
-/// How often progress is drawn, how often an idle program looks whether it is to end, and how often at the files.
+/// How often progress is drawn, how often an idle program looks whether it is to end, and how often at the files
+/// (choices: what seems at once, and next to no work).
 const BUSY: Duration = Duration::from_millis(100);
 const IDLE: Duration = Duration::from_millis(250);
 const FILES: Duration = Duration::from_secs(1);
@@ -75,6 +77,10 @@ fn on_terminal(asked: Asked) -> io::Result<()> {
         quick: worker(&send),
         long: worker(&send),
         aside: worker(&send),
+        errands: {
+            let send = send.clone();
+            Errands::start(move |event| _ = send.send(Arrived::Event(event)))
+        },
         kept,
         watched: Arc::default(),
         send: send.clone(),
@@ -151,16 +157,14 @@ fn wait(arrivals: &Receiver<Arrived>, model: &mut Model, end: &AtomicBool) -> Op
     }
 }
 
-/// What is watched: what was named, and how its files stood.
-type Watched = (String, Stamps);
-
 /// What effects reach.
 struct Outside {
     quick: Worker,
     long: Worker,
     aside: Worker,
+    errands: Errands,
     kept: Kept,
-    watched: Arc<Mutex<Option<Watched>>>,
+    watched: Arc<Mutex<Option<Seen>>>,
     send: Sender<Arrived>,
 }
 
@@ -170,21 +174,19 @@ impl Outside {
         match effect {
             Effect::Ask(generation, work) => self.worker(work.lane()).ask(generation, work),
             Effect::Stop(lane, generation) => self.worker(lane).stop(generation),
-            Effect::Watch(named) => {
-                let seen = stamps(&named);
-                *self.watched.lock().unwrap_or_else(PoisonError::into_inner) = Some((named, seen));
+            Effect::Watch(seen) => {
+                *self.watched.lock().unwrap_or_else(PoisonError::into_inner) = Some(seen);
             }
-            Effect::List(folder) => self.answer(Event::Sites(sites(folder.as_deref()))),
-            Effect::NewSite(folder, system) => {
+            Effect::List(folder) => self.errands.run(move || Some(Event::Sites(sites(folder.as_deref())))),
+            Effect::NewSite(folder, system) => self.errands.run(move || {
                 let made = tasks::new(Path::new(&folder), system).map(|_| folder);
-                self.answer(Event::Made(made));
-            }
+                Some(Event::Made(made))
+            }),
             Effect::Copy(text) => taken.copy(&text)?,
             Effect::Keep(likes) => {
                 taken.mouse(!likes.no_mouse)?;
-                if let Err(problem) = settings::save(&self.kept.words(likes)) {
-                    self.answer(Event::Said(problem));
-                }
+                let words = self.kept.words(likes);
+                self.errands.run(move || settings::save(&words).err().map(Event::Said));
             }
             Effect::Quit => return Ok(true),
             Effect::Suspend => {}
@@ -263,7 +265,7 @@ fn listen(send: Sender<Arrived>, paused: Arc<AtomicBool>) {
 }
 
 /// Looks each second whether the files of the site watched differ from what they were.
-fn watch(watched: &Arc<Mutex<Option<Watched>>>, send: Sender<Arrived>) {
+fn watch(watched: &Arc<Mutex<Option<Seen>>>, send: Sender<Arrived>) {
     let watched = Arc::clone(watched);
     thread::spawn(move || {
         loop {
