@@ -26,6 +26,13 @@ pub fn caution_within(cells: usize) -> &'static str {
     std::iter::once(caution()).chain(SHORTER).find(fits).unwrap_or(SHORTER[4])
 }
 
+/// `1 day`, `14 days`: days to the nearest.
+pub fn days(days: f64) -> String {
+    let figure = format!("{days:.0}");
+    let plural = if figure == "1" { "" } else { "s" };
+    format!("{figure} day{plural}")
+}
+
 /// Flags and notes of a list, flags first, each in the order it was found.
 pub fn flags_of(problems: &[Problem]) -> Vec<&Problem> {
     let mut out: Vec<&Problem> = problems.iter().collect();

@@ -10,8 +10,11 @@ use super::{Context, Failure, given};
 
 /// Shares of two parts between which roots are sought (choice).
 const PLACES: u32 = 40;
-/// Halvings of a root.
+/// Halvings of a root (choice: beyond any meter).
 const HALVINGS: usize = 40;
+
+/// A root gives the temperature wanted this nearly, C (choice: half of the tenth that is shown).
+const ROOT_C: f64 = 0.05;
 
 /// A setting solved for a temperature.
 #[derive(Debug, Clone, PartialEq)]
@@ -73,7 +76,9 @@ pub(super) fn roots(water: Water, both_m3s: f64, wanted_c: f64) -> (Vec<Root>, [
         .collect();
     let mut roots = Vec::new();
     let mut root = |share: f64| {
-        if let Some((temperature_c, oxygen_mg_l)) = water(share) {
+        // what halving finds at a jump, or where some splits cannot be, is no root
+        let near = |water: &(f64, Option<f64>)| (water.0 - wanted_c).abs() < ROOT_C;
+        if let Some((temperature_c, oxygen_mg_l)) = water(share).filter(near) {
             let flows_m3s = [both_m3s * share, both_m3s * (1.0 - share)];
             roots.push(Root { share, flows_m3s, temperature_c, oxygen_mg_l });
         }
@@ -93,6 +98,11 @@ pub(super) fn roots(water: Water, both_m3s: f64, wanted_c: f64) -> (Vec<Root>, [
             }
             root(0.5 * (low + high));
         }
+    }
+    if let Some(&(share, at)) = places.last()
+        && (at - wanted_c).abs() < 1e-12
+    {
+        root(share);
     }
     let temperatures = || places.iter().map(|p| p.1);
     let bracket_c =

@@ -122,7 +122,7 @@ pub fn start(model: &mut Model) -> Vec<Effect> {
     match folder {
         Some(folder) => {
             model.folder = Some(folder.clone());
-            model.stage = Stage::Sites { list: sites(Some(&folder)), at: 0 };
+            model.stage = Stage::Sites { list: sites(Some(&folder)), at: 0, kept: None };
             Vec::new()
         }
         None => begin(model),

@@ -15,7 +15,7 @@ use crate::problem::Problem;
 use crate::tasks::rank::{RankAnswer, RankAsked, rank};
 use crate::tasks::{
     Asked, Cast, Changed, Context, Failure, Given, MixAnswer, PoolAnswer, Solved, casts, mix_given, open,
-    pool, solve,
+    pool, preferred_c, solve,
 };
 use crate::units::System;
 
@@ -52,8 +52,8 @@ pub enum Work {
         on: On,
         /// The settings.
         tries: Vec<Given>,
-        /// The setting to solve for a temperature (C), where that is asked.
-        solve: Option<(Given, f64)>,
+        /// The setting to solve for the preferred temperature, where that is asked.
+        solve: Option<Given>,
     },
     /// The ranking, under what is changed.
     Rank {
@@ -88,8 +88,8 @@ pub struct Computed {
     pub anew: Option<Anew>,
     /// Each setting with its answer.
     pub mixes: Vec<(Given, Result<MixAnswer, Failure>)>,
-    /// The setting solved, where that was asked.
-    pub solved: Option<Result<Solved, Failure>>,
+    /// The setting that was to be solved, and what came of it.
+    pub solved: Option<(Given, Result<Solved, Failure>)>,
 }
 
 /// What was named, and how its files stood before they were read.
@@ -154,7 +154,7 @@ impl Work {
     }
 }
 
-fn computed(on: On, tries: Vec<Given>, wanted: Option<(Given, f64)>) -> Result<Computed, Failure> {
+fn computed(on: On, tries: Vec<Given>, wanted: Option<Given>) -> Result<Computed, Failure> {
     let (context, anew) = match on {
         On::Same(context) => (context, None),
         On::Files(base, changed) => {
@@ -165,7 +165,12 @@ fn computed(on: On, tries: Vec<Given>, wanted: Option<(Given, f64)>) -> Result<C
     };
     let mixes =
         tries.into_iter().map(|t| (t.clone(), mix_given(&context, &asked(context.site(), &t)))).collect();
-    let solved = wanted.map(|(given, wanted_c)| solve(&context, &asked(context.site(), &given), wanted_c));
+    let solved = wanted.map(|given| {
+        let answer = preferred_c(&context)
+            .ok_or_else(|| Failure::Usage("no target of this date prefers a temperature".into()))
+            .and_then(|wanted_c| solve(&context, &asked(context.site(), &given), wanted_c));
+        (given, answer)
+    });
     Ok(Computed { anew, mixes, solved })
 }
 

@@ -73,18 +73,19 @@ mod measured {
         terminal.send("2");
         terminal.wait_for("the setting now");
         terminal.wait("the ranking", |s| s.contents().contains("50.6 to 58.6 F"));
-        // the flow of N3: down to its row, right to its flow
-        terminal.send(&"\u{1b}[B".repeat(5));
-        terminal.send("\u{1b}[C");
+        // the flow of N4, two rows below the first gate that flows
+        terminal.send(&"\u{1b}[B".repeat(2));
+        terminal.wait_for("[|N4]");
         let mut keys = Vec::new();
         let mut bytes = Vec::new();
-        for _ in 0..ROUNDS {
+        // up and down again, so that each step shows in the digits
+        for key in [">", ">", ">", "<", "<", "<"] {
             let before = terminal.text();
             let release = |text: &str| {
                 text.lines().find(|l| l.starts_with("tried")).map(str::to_owned).unwrap_or_default()
             };
             let (old, written, begun) = (release(&before), terminal.bytes.len(), Instant::now());
-            terminal.send(">");
+            terminal.send(key);
             terminal.wait("the new release", |s| release(&s.contents()) != old);
             keys.push(ms(begun));
             bytes.push(terminal.bytes.len() - written);

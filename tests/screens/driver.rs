@@ -120,7 +120,9 @@ impl Driver {
         for word in keys.split(' ') {
             self.send(Event::Key(key(word)));
             // a key that follows an answer may depend on it; the ranking follows when there is time
-            while let Some(question) = self.question(Lane::Quick).filter(|_| !self.held) {
+            while !self.held
+                && let Some(question) = self.question(Lane::Quick)
+            {
                 self.answer(question);
             }
         }

@@ -4,6 +4,7 @@
 
 mod driver;
 mod held;
+mod kept;
 mod keys;
 mod numbers;
 #[cfg(unix)]

@@ -106,11 +106,10 @@ fn evening(no_color: bool) {
     assert_ne!(terminal.screen().mouse_protocol_mode(), MouseProtocolMode::None);
     terminal.send("2");
     terminal.wait_for("the setting now");
-    // the gate board begins at the highest outlet; the flow of N3 is typed
-    terminal.send(&DOWN.repeat(5));
-    terminal.send(RIGHT);
+    // the board begins at the first gate that flows; two rows below it is one in colder water
+    terminal.send(&DOWN.repeat(2));
     terminal.send("\r");
-    terminal.wait_for("flow of N3");
+    terminal.wait_for("flow of N4, cfs");
     terminal.send("200\r");
     terminal.wait_for("colder");
     let changed = line_with(terminal, "against now");

@@ -97,8 +97,8 @@ fn random_event(dice: &mut Dice) -> TermEvent {
 /// What must hold after any event.
 fn holds(driver: &Driver) {
     match &driver.model.stage {
-        Stage::Opening => {}
-        Stage::Sites { list, at } => assert!(*at < list.len().max(1)),
+        Stage::Opening { .. } => {}
+        Stage::Sites { list, at, .. } => assert!(*at < list.len().max(1)),
         Stage::Broken { problems, scroll, .. } => assert!(*scroll < problems.len().max(1)),
         Stage::Site(session) => {
             let (draft, site) = (session.draft(), session.base.site());

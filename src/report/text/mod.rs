@@ -20,7 +20,7 @@ pub use pool::{cold_since_words, layer_words, reach_words, since_words};
 
 use super::column::drawn_column;
 use super::fitted;
-use super::sentence::{caution, flags_of};
+use super::sentence::{caution, days, flags_of};
 
 /// Width text is wrapped at.
 const WIDTH: usize = 80;
@@ -98,7 +98,7 @@ fn head(context: &Context, fingerprint: &str) -> String {
         || "at an unknown time".to_owned(),
         |t| t.with_timezone(&site.offset).format("%Y-%m-%d %H:%M %:z").to_string(),
     );
-    let age = context.age_days.map_or_else(String::new, |d| format!(", {d:.0} days old"));
+    let age = context.age_days.map_or_else(String::new, |d| format!(", {} old", days(d)));
     let badge = Freshness::of(site, context.age_days).word();
     let _ = writeln!(out, "Cast  {taken}{age}: {badge}");
     let unread = profile.flags.iter().filter(|p| p.kind == "cast-unreadable").count();

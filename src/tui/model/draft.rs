@@ -81,10 +81,14 @@ impl History {
         &self.now
     }
 
-    /// Takes a new draft; whether it differs from the last.
+    /// Takes a new draft; whether it differs from the last. Looking at another try is no change to be taken back.
     pub fn change(&mut self, draft: Draft) -> bool {
         if draft == self.now {
             return false;
+        }
+        if (Draft { at: self.now.at, beside: self.now.beside, ..draft.clone() }) == self.now {
+            self.now = draft;
+            return true;
         }
         self.past.push(std::mem::replace(&mut self.now, draft));
         if self.past.len() > KEPT {
@@ -92,6 +96,14 @@ impl History {
         }
         self.future.clear();
         true
+    }
+
+    /// Forgets targets that were tried, in every draft; whether there were any now.
+    pub fn drop_targets(&mut self) -> bool {
+        let tried = self.now.changed.targets.is_some();
+        let drafts = self.past.iter_mut().chain(self.future.iter_mut()).chain([&mut self.now]);
+        drafts.for_each(|draft| draft.changed.targets = None);
+        tried
     }
 
     /// Takes the last change back; whether there was one.

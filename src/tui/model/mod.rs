@@ -53,13 +53,18 @@ pub struct Choice {
 #[derive(Debug)]
 pub enum Stage {
     /// A site is being opened.
-    Opening,
+    Opening {
+        /// The session that goes on with it.
+        kept: Option<Box<Session>>,
+    },
     /// A list of sites.
     Sites {
         /// The sites.
         list: Vec<Choice>,
         /// The line chosen.
         at: usize,
+        /// The session to go back to.
+        kept: Option<Box<Session>>,
     },
     /// A site whose files give no answer.
     Broken {
@@ -163,7 +168,7 @@ impl Model {
         Self {
             asked,
             folder: None,
-            stage: Stage::Opening,
+            stage: Stage::Opening { kept: None },
             over: None,
             message: None,
             likes,

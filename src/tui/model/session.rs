@@ -208,10 +208,10 @@ impl Session {
     pub fn takes(&self, other: &Context) -> bool {
         let names = |context: &Context| {
             let site = context.site();
-            let outlets = site.outlets.iter().map(|o| (o.name.clone(), o.well));
-            let wells = site.wells.iter().map(|w| (w.name.clone(), None));
-            let targets = site.targets.iter().map(|t| (t.name.clone(), None));
-            outlets.chain(wells).chain(targets).collect::<Vec<_>>()
+            let outlets: Vec<_> = site.outlets.iter().map(|o| (o.name.clone(), o.well)).collect();
+            let wells: Vec<_> = site.wells.iter().map(|w| w.name.clone()).collect();
+            let targets: Vec<_> = site.targets.iter().map(|t| t.name.clone()).collect();
+            (outlets, wells, targets)
         };
         names(&self.base) == names(other)
     }
@@ -227,5 +227,12 @@ impl Session {
     /// The answer to the try on the board.
     pub fn tried(&self) -> Option<&MixAnswer> {
         self.answer(self.draft().at)?.as_ref().ok()
+    }
+
+    /// The same where it is of exactly this setting, not one of before.
+    pub fn tried_now(&self) -> Option<&MixAnswer> {
+        let shown = self.shown.as_ref().filter(|_| self.is_current())?;
+        let tried = self.draft().tried()?;
+        shown.mixes.iter().find(|(given, _)| given == tried)?.1.as_ref().ok()
     }
 }

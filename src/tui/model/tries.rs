@@ -96,7 +96,8 @@ pub fn set_opening(site: &Site, given: &mut Given, outlet: usize, opening: f64) 
     };
     by_openings(site, given, well);
     put(&mut given.open, outlet, opening, shut);
-    if !shut && !given.totals.iter().any(|t| t.0 == well) {
+    // openings alone are answered by the blocks of the day, where the site has any
+    if !shut && site.blocks.is_empty() && !given.totals.iter().any(|t| t.0 == well) {
         given.totals.push((well, 0.0));
     }
 }
@@ -120,9 +121,10 @@ pub fn set_flow(site: &Site, given: &mut Given, outlet: usize, flow_m3s: f64, sp
 pub fn set_total(site: &Site, given: &mut Given, well: usize, flow_m3s: f64) {
     let on = |g: &ByFlow| site.outlets[g.outlet].well == Some(well);
     let sum: f64 = given.flows.iter().filter(|g| on(g)).map(|g| g.flow_m3s).sum();
-    if sum > 0.0 {
+    if sum > 0.0 && flow_m3s > 0.0 {
         given.flows.iter_mut().filter(|g| on(g)).for_each(|g| g.flow_m3s *= flow_m3s / sum);
     } else {
+        by_openings(site, given, well);
         put(&mut given.totals, well, flow_m3s, false);
     }
 }
@@ -138,19 +140,20 @@ pub fn total_m3s(site: &Site, given: &Given, well: usize) -> Option<f64> {
     }
 }
 
-/// Everything set, in proportion, so that it comes to a total, m3/s; totals of wells without an open gate wait as they
-/// are. Nothing changes where nothing is set by flow.
-pub fn set_release(site: &Site, given: &mut Given, flow_m3s: f64) {
+/// Everything set by flow, in proportion, so that with what passes beside it comes to a total, m3/s; totals of wells
+/// without an open gate wait as they are. Whether that can be: something is set by flow, and no more passes beside.
+pub fn set_release(site: &Site, given: &mut Given, flow_m3s: f64, beside_m3s: f64) -> bool {
     let passing = asked(site, given);
     let sum: f64 = passing.flows.iter().map(|g| g.flow_m3s).sum::<f64>()
         + passing.totals.iter().map(|t| t.1).sum::<f64>();
-    if sum <= 0.0 {
-        return;
+    if sum <= 0.0 || flow_m3s <= beside_m3s {
+        return false;
     }
-    let times = flow_m3s / sum;
+    let times = (flow_m3s - beside_m3s) / sum;
     given.flows.iter_mut().for_each(|g| g.flow_m3s *= times);
     let carries = |well: usize| passing.totals.iter().any(|t| t.0 == well);
     given.totals.iter_mut().filter(|t| carries(t.0)).for_each(|t| t.1 *= times);
+    true
 }
 
 fn put(list: &mut Vec<(usize, f64)>, index: usize, value: f64, out: bool) {
@@ -177,13 +180,14 @@ fn by_openings(site: &Site, given: &mut Given, well: usize) {
 /// A well set by openings, set by the flows it then shares out.
 fn by_flows(site: &Site, given: &mut Given, well: usize, split: Option<&Setting>) {
     let on = |outlet: usize| site.outlets[outlet].well == Some(well);
-    let open: Vec<(usize, f64)> = given.open.iter().copied().filter(|g| on(g.0)).collect();
+    let open: Vec<(usize, f64)> = given.open.iter().copied().filter(|g| on(g.0) && g.1 > 0.0).collect();
+    let openings: f64 = open.iter().map(|g| g.1).sum();
     let total = given.totals.iter().find(|t| t.0 == well).map_or(0.0, |t| t.1);
     given.totals.retain(|t| t.0 != well);
     given.open.retain(|g| !on(g.0));
     for (outlet, opening) in &open {
         let shared = split.and_then(|s| s.gates.iter().find(|g| g.outlet == *outlet)).map(|g| g.flow_m3s);
-        let flow_m3s = shared.unwrap_or(total / open.len() as f64);
+        let flow_m3s = shared.unwrap_or(total * opening / openings);
         given.flows.push(ByFlow { outlet: *outlet, flow_m3s, opening: Some(*opening) });
     }
 }

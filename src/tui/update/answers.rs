@@ -6,7 +6,7 @@ use crate::tasks::rank::Part;
 use crate::tasks::{Context, Failure, Solved};
 use crate::units::{Dimension, show};
 
-use super::super::model::{Model, Session, Shown, Stage};
+use super::super::model::{Model, Over, Session, Shown, Stage};
 use super::super::work::{Computed, Done, Lane, Sent};
 use super::{Effect, ask_casts, ask_mixes, ask_rank, change, complain, say};
 
@@ -52,11 +52,11 @@ pub(super) fn sent(model: &mut Model, sent: Sent) -> Vec<Effect> {
 }
 
 fn opened(model: &mut Model, opened: Result<Arc<Context>, Failure>) -> Vec<Effect> {
-    let stage = std::mem::replace(&mut model.stage, Stage::Opening);
+    let stage = std::mem::replace(&mut model.stage, Stage::Opening { kept: None });
     let before = match stage {
         Stage::Site(session) => Some(session),
-        Stage::Broken { kept, .. } => kept,
-        Stage::Opening | Stage::Sites { .. } => None,
+        Stage::Broken { kept, .. } | Stage::Opening { kept } => kept,
+        Stage::Sites { .. } => None,
     };
     let context = match opened {
         Ok(context) => context,
@@ -69,6 +69,7 @@ fn opened(model: &mut Model, opened: Result<Arc<Context>, Failure>) -> Vec<Effec
                 }
                 Failure::Stopped => (Vec::new(), model.system()),
             };
+            model.over = None;
             model.stage = Stage::Broken { problems, system, scroll: 0, kept: before };
             return Vec::new();
         }
@@ -76,10 +77,17 @@ fn opened(model: &mut Model, opened: Result<Arc<Context>, Failure>) -> Vec<Effec
     let session = match before {
         None => Box::new(Session::begin(context)),
         Some(mut session) if session.takes(&context) => {
+            if session.base.site().targets != context.site().targets && session.history.drop_targets() {
+                say(model, "targets changed in the site file: those tried here are dropped");
+            }
             session.base = context;
             session
         }
         Some(session) => {
+            // fields and lists speak of gates by their old places
+            if !matches!(model.over, Some(Over::Help(_) | Over::Settings(_))) {
+                model.over = None;
+            }
             say(model, "gates, wells or targets changed in the site file: tries begin anew");
             Box::new(Session { screen: session.screen, ..Session::begin(context) })
         }
@@ -109,9 +117,18 @@ fn mixed(model: &mut Model, mixed: Result<Box<Computed>, Failure>) -> Vec<Effect
     };
     if let Some(on) = on {
         let mixes = session.draft().tries.iter().filter_map(answer).collect();
+        let context = Arc::clone(&on.context);
         session.shown = Some(Shown { on, mixes });
+        // a target that is not valid on the date has no row any more
+        session.mix.cell = session.mix.cell.moved(context.site(), context.on.date_naive(), 0, 0);
     }
-    solved.map_or_else(Vec::new, |solved| take_solved(model, solved))
+    match solved {
+        // who went on to another try meanwhile has it left alone
+        Some((given, solved)) if model.session().is_some_and(|s| s.draft().tried() == Some(&given)) => {
+            take_solved(model, solved)
+        }
+        _ => Vec::new(),
+    }
 }
 
 /// Puts the first split that gives the temperature on the board, or says why there is none.

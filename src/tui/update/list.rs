@@ -21,7 +21,14 @@ pub(super) fn sites(model: &mut Model) -> Vec<Effect> {
 
 /// Shows the list of sites.
 pub(super) fn listed(model: &mut Model, list: Vec<Choice>) -> Vec<Effect> {
-    model.stage = Stage::Sites { list, at: 0 };
+    let stage = std::mem::replace(&mut model.stage, Stage::Opening { kept: None });
+    let kept = match stage {
+        Stage::Site(session) => Some(session),
+        Stage::Broken { kept, .. } | Stage::Opening { kept } | Stage::Sites { kept, .. } => kept,
+    };
+    // no answer that is still to come may take the list away
+    (model.quick, model.long, model.aside) = (None, None, None);
+    model.stage = Stage::Sites { list, at: 0, kept };
     Vec::new()
 }
 
@@ -37,7 +44,7 @@ pub(super) fn act(model: &mut Model, action: Action) -> Vec<Effect> {
         return over(model, action);
     }
     match &mut model.stage {
-        Stage::Sites { list, at } => match action {
+        Stage::Sites { list, at, .. } => match action {
             Action::Enter => {
                 let named = list.get(*at).map(|c| c.named.clone());
                 named.map_or_else(Vec::new, |named| open(model, named))
@@ -55,7 +62,7 @@ pub(super) fn act(model: &mut Model, action: Action) -> Vec<Effect> {
             *scroll = moved(*scroll, action, problems.len());
             Vec::new()
         }
-        Stage::Opening | Stage::Site(_) => Vec::new(),
+        Stage::Opening { .. } | Stage::Site(_) => Vec::new(),
     }
 }
 
@@ -83,7 +90,7 @@ fn over(model: &mut Model, action: Action) -> Vec<Effect> {
             model.over = None;
         }
         (Over::Help(at), _) => {
-            let lines = super::super::view::help_lines();
+            let lines = super::super::view::help_lines(model.size.1);
             model.over = Some(Over::Help(moved(at, action, lines)));
         }
         (Over::Settings(at), Action::Toggle | Action::More) => {

@@ -4,7 +4,7 @@ use chrono::Days;
 
 use crate::site::{Outlet, SAME_OPENING, Site};
 use crate::target::Target;
-use crate::tasks::{Context, Given, preferred_c};
+use crate::tasks::{Context, Given, MixAnswer};
 use crate::units::{Dimension, System, figure};
 
 use super::super::keys::Action;
@@ -12,7 +12,7 @@ use super::super::model::{
     Cell, Draft, Field, Model, Nudge, Over, Session, Typed, Value, asked, set_flow, set_opening, set_release,
     set_total, total_m3s,
 };
-use super::{Effect, ask_mixes, change, complain, recompute, say};
+use super::{Effect, ask_mixes, change, complain, mix_rows, recompute, say};
 
 /// Step of a flow and a large one, in the unit shown: cfs and m3/s (choice).
 const FLOW: [(f64, f64); 2] = [(10.0, 100.0), (0.5, 5.0)];
@@ -26,6 +26,8 @@ const OXYGEN: (f64, f64) = (0.5, 2.0);
 const OPENING: (f64, f64) = (5.0, 25.0);
 /// The same of the date, days.
 const DAYS: (u64, u64) = (1, 7);
+/// Lines of a page of what is said (choice).
+const PAGE: usize = 3;
 /// Most tries kept side by side (choice).
 pub(super) const TRIES: usize = 9;
 
@@ -81,9 +83,10 @@ fn chosen(model: &mut Model, down: isize, right: isize) -> Vec<Effect> {
 }
 
 fn scrolled(model: &mut Model, down: bool) -> Vec<Effect> {
+    let last = mix_rows(model);
     if let Some(session) = model.session_mut() {
-        let scroll = &mut session.mix.scroll;
-        *scroll = if down { scroll.saturating_add(5) } else { scroll.saturating_sub(5) };
+        let at = session.mix.scroll.min(last);
+        session.mix.scroll = if down { (at + PAGE).min(last) } else { at.saturating_sub(PAGE) };
     }
     Vec::new()
 }
@@ -128,12 +131,8 @@ fn back_and_forth(model: &mut Model, back: bool) -> Vec<Effect> {
 }
 
 fn solving(model: &mut Model) -> Vec<Effect> {
-    let wanted = model.session().and_then(|s| Some((s.draft().tried()?.clone(), preferred_c(s.context())?)));
-    if let Some(wanted) = wanted {
-        return ask_mixes(model, Some(wanted)).into_iter().collect();
-    }
-    complain(model, "no target of this date prefers a temperature");
-    Vec::new()
+    let tried = model.session().and_then(|s| s.draft().tried().cloned());
+    ask_mixes(model, tried).into_iter().collect()
 }
 
 fn toggled(model: &mut Model) -> Vec<Effect> {
@@ -178,11 +177,7 @@ fn value(session: &Session, cell: Cell) -> Option<f64> {
             setting.gates.iter().find(|g| g.outlet == i).map(|g| g.flow_m3s)
         }),
         Cell::Total(i) => total_m3s(site, tried, i),
-        Cell::Release => {
-            let passing = asked(site, tried);
-            let flows = passing.flows.iter().map(|g| g.flow_m3s);
-            Some(flows.chain(passing.totals.iter().map(|t| t.1)).sum())
-        }
+        Cell::Release => Some(by_flow_m3s(site, tried) + beside_m3s(session)),
         Cell::Pool => Some(draft.changed.pool_m.unwrap_or(context.profile.pool_m)),
         Cell::Date => None,
         Cell::Low(i) => target(i)?.low_c,
@@ -190,6 +185,20 @@ fn value(session: &Session, cell: Cell) -> Option<f64> {
         Cell::High(i) => target(i)?.high_c,
         Cell::Oxygen(i) => target(i)?.oxygen_min_mg_l,
     }
+}
+
+/// What a setting sets by flow, m3/s.
+fn by_flow_m3s(site: &Site, given: &Given) -> f64 {
+    let passing = asked(site, given);
+    let flows = passing.flows.iter().map(|g| g.flow_m3s);
+    flows.chain(passing.totals.iter().map(|t| t.1)).sum()
+}
+
+/// What passes beside that, m3/s: outlets set by their opening alone, and what spills by itself.
+fn beside_m3s(session: &Session) -> f64 {
+    let of = |answer: &MixAnswer| answer.setting.gates.iter().map(|g| g.flow_m3s).sum::<f64>();
+    let given = session.draft().tried().map_or(0.0, |given| by_flow_m3s(session.base.site(), given));
+    session.tried_now().map_or(0.0, |answer| (of(answer) - given).max(0.0))
 }
 
 fn targets(session: &Session, draft: &Draft) -> Vec<Target> {
@@ -289,10 +298,23 @@ pub(super) fn typing(model: &mut Model) -> Vec<Effect> {
 
 /// Puts a value into a cell.
 pub(super) fn put(model: &mut Model, cell: Cell, value: &Value) -> Vec<Effect> {
+    let before = model.session().map(|s| s.draft().clone());
+    let effects = put_into(model, cell, value);
+    if cell == Cell::Release && model.session().map(Session::draft) == before.as_ref() {
+        complain(
+            model,
+            "so the total cannot be: what is set by flow shares it out, beside what passes anyway",
+        );
+    }
+    effects
+}
+
+fn put_into(model: &mut Model, cell: Cell, value: &Value) -> Vec<Effect> {
     change(model, |session, draft| {
         let site: &Site = session.base.site();
         let number = if let Value::Number(number) = value { *number } else { None };
-        let split = session.tried().map(|answer| answer.setting.clone());
+        let split = session.tried_now().map(|answer| answer.setting.clone());
+        let beside_m3s = beside_m3s(session);
         match (cell, number) {
             (Cell::Date, _) => {
                 if let Value::Moment(on) = value {
@@ -314,15 +336,14 @@ pub(super) fn put(model: &mut Model, cell: Cell, value: &Value) -> Vec<Effect> {
             (_, None) => {}
             (Cell::Pool, Some(pool_m)) => draft.changed.pool_m = Some(pool_m),
             (cell, Some(number)) => {
-                if cell == Cell::Release {
-                    draft.release_m3s = Some(number).filter(|flow| *flow > 0.0);
-                }
                 let Some(tried) = draft.tried_mut() else { return };
                 match cell {
                     Cell::Opening(i) => set_opening(site, tried, i, number),
                     Cell::Flow(i) => set_flow(site, tried, i, number, split.as_ref()),
                     Cell::Total(i) => set_total(site, tried, i, number),
-                    Cell::Release if number > 0.0 => set_release(site, tried, number),
+                    Cell::Release if set_release(site, tried, number, beside_m3s) => {
+                        draft.release_m3s = Some(number);
+                    }
                     _ => {}
                 }
             }

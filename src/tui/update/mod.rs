@@ -11,6 +11,7 @@ mod typing;
 use chrono::{DateTime, Utc};
 use crossterm::event::{KeyEvent, MouseEvent};
 
+use crate::files::folder::demonstrations;
 use crate::problem::Problem;
 use crate::tasks::rank::RankAsked;
 use crate::tasks::{Asked, Given};
@@ -18,7 +19,7 @@ use crate::units::System;
 
 use super::keys::{Action, Place, action};
 use super::model::{Choice, Draft, Likes, Message, Model, Over, Screen, Session, Stage, Under};
-use super::view::{answer_text, rank_rows};
+use super::view::{answer_text, mix_rows, rank_rows};
 use super::work::{Lane, On, Seen, Sent, Work};
 
 /// A message.
@@ -77,8 +78,15 @@ pub fn begin(model: &mut Model) -> Vec<Effect> {
 
 /// Opens another site.
 fn open(model: &mut Model, named: String) -> Vec<Effect> {
+    // the first demonstration is opened where nothing is named
+    let first = || demonstrations().first().map(|name| (*name).to_owned());
+    let again = model.asked.site.clone().or_else(first).as_ref() == Some(&named);
     model.asked = Asked { site: Some(named), units: model.asked.units, ..Asked::default() };
-    model.stage = Stage::Opening;
+    let kept = match std::mem::replace(&mut model.stage, Stage::Opening { kept: None }) {
+        Stage::Sites { kept, .. } if again => kept,
+        _ => None,
+    };
+    model.stage = Stage::Opening { kept };
     model.message = None;
     begin(model)
 }
@@ -95,6 +103,8 @@ pub fn update(model: &mut Model, event: Event) -> Vec<Effect> {
         }
         Event::Tick(clock) => ticked(model, clock),
         Event::Sent(sent) => answers::sent(model, sent),
+        // who chooses a site is not to be pulled back into the last
+        Event::FilesChanged if matches!(model.stage, Stage::Sites { .. }) => Vec::new(),
         Event::FilesChanged => {
             // what is computed on the old files is computed on nothing
             let work = Work::Open(model.asked.clone(), model.clock);
@@ -118,7 +128,7 @@ pub fn places(model: &Model) -> Vec<Place> {
         None => {}
     }
     match &model.stage {
-        Stage::Opening => vec![Place::Everywhere],
+        Stage::Opening { .. } => vec![Place::Everywhere],
         Stage::Sites { .. } => vec![Place::Sites, Place::Everywhere],
         Stage::Broken { .. } => vec![Place::Problems, Place::Everywhere],
         Stage::Site(session) => {
@@ -172,7 +182,7 @@ fn act(model: &mut Model, action: Action) -> Vec<Effect> {
         Action::PreviousScreen => to_screen(model, |at| (at + Screen::ALL.len() - 1) % Screen::ALL.len()),
         other => match &model.stage {
             Stage::Sites { .. } | Stage::Broken { .. } => list::act(model, other),
-            Stage::Opening => Vec::new(),
+            Stage::Opening { .. } => Vec::new(),
             Stage::Site(session) => match session.screen {
                 Screen::Pool => pool::act(model, other),
                 Screen::Mix => mix::act(model, other),
@@ -195,6 +205,11 @@ fn to_screen(model: &mut Model, to: impl Fn(usize) -> usize) -> Vec<Effect> {
 
 /// Back: what is looked at on the pool screen first, then long work is stopped, then what was said is taken off.
 fn back(model: &mut Model) -> Vec<Effect> {
+    if let Stage::Sites { kept, .. } = &mut model.stage {
+        let Some(session) = kept.take() else { return Vec::new() };
+        model.stage = Stage::Opening { kept: Some(session) };
+        return begin(model);
+    }
     if let Some(session) = model.session_mut().filter(|s| s.screen == Screen::Pool) {
         let read = session.pool.cursor_m.take().is_some();
         if read || session.pool.cast.take().is_some() {
@@ -214,6 +229,15 @@ fn back(model: &mut Model) -> Vec<Effect> {
 }
 
 fn copy(model: &mut Model) -> Vec<Effect> {
+    let waits = model.quick.is_some();
+    let old = model.session().is_some_and(|s| match s.screen {
+        Screen::Rank => !s.ranks_now(),
+        Screen::Pool | Screen::Mix => s.wrong.is_some() || !s.is_current() || waits,
+    });
+    if old {
+        complain(model, "what is shown is from before: nothing was copied");
+        return Vec::new();
+    }
     if let Some(text) = answer_text(model) {
         say(model, "copied to the clipboard of the terminal, where it takes that");
         return vec![Effect::Copy(text)];
@@ -297,7 +321,7 @@ fn ask_casts(model: &mut Model) -> Option<Effect> {
 }
 
 /// Asks for every try that has no answer yet.
-fn ask_mixes(model: &mut Model, solve: Option<(Given, f64)>) -> Option<Effect> {
+fn ask_mixes(model: &mut Model, solve: Option<Given>) -> Option<Effect> {
     // a question now would stop the opening; what is opened asks for every try by itself
     if model.quick.as_ref().is_some_and(|under| under.opening) {
         return None;

@@ -1,6 +1,6 @@
 //! Typing: checked at every key.
 
-use crossterm::event::{Event as TermEvent, KeyCode, KeyEvent, KeyEventKind};
+use crossterm::event::{Event as TermEvent, KeyCode, KeyEvent, KeyEventKind, KeyModifiers};
 use tui_input::backend::crossterm::EventHandler as _;
 
 use super::super::keys::{Action, Place, action};
@@ -21,7 +21,8 @@ pub(super) fn key(model: &mut Model, key: &KeyEvent) -> Vec<Effect> {
         None => {
             if key.kind != KeyEventKind::Release {
                 edited(model, |field| {
-                    let letter = matches!(key.code, KeyCode::Char(_));
+                    let held = key.modifiers.intersects(KeyModifiers::CONTROL | KeyModifiers::ALT);
+                    let letter = matches!(key.code, KeyCode::Char(_)) && !held;
                     if letter && field.untouched {
                         field.input.reset();
                     }
@@ -66,6 +67,11 @@ fn entered(model: &mut Model) -> Vec<Effect> {
     let system = model.system();
     let context = model.session().map(|s| s.context().clone());
     let Some(Over::Field(field)) = &mut model.over else { return Vec::new() };
+    // what was not touched stays as it is, to the last digit
+    if field.untouched && !field.input.value().is_empty() {
+        model.over = None;
+        return Vec::new();
+    }
     let value = match field.value(context.as_deref(), system) {
         Ok(value) => value,
         Err(why) => {

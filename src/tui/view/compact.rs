@@ -21,8 +21,8 @@ pub(super) fn draw(model: &Model, area: Rect, buf: &mut Buffer) {
     put(buf, area, 0, last.saturating_sub(1), &cut(&size, width), look.style(Role::Quiet));
     let mut lines: Vec<(String, Role)> = Vec::new();
     match &model.stage {
-        Stage::Opening => lines.push(("opening ...".into(), Role::Plain)),
-        Stage::Sites { list, at } => {
+        Stage::Opening { .. } => lines.push(("opening ...".into(), Role::Plain)),
+        Stage::Sites { list, at, .. } => {
             lines.push(("which site?".into(), Role::Strong));
             lines.extend(list.get(*at).map(|c| (format!("> {}", harmless(&c.name)), Role::Plain)));
         }
@@ -46,6 +46,10 @@ pub(super) fn draw(model: &Model, area: Rect, buf: &mut Buffer) {
                 1,
             );
             lines.push((format!("{screen}: pool {pool}, cast {badge}"), Role::Plain));
+            let (words, role) = super::frame::status(model, session);
+            if !words.is_empty() {
+                lines.push((words, role));
+            }
             if session.screen == Screen::Rank {
                 for (line, role) in super::rank::in_short(model, session, width) {
                     lines.push((line, role));
@@ -58,6 +62,9 @@ pub(super) fn draw(model: &Model, area: Rect, buf: &mut Buffer) {
                     let words = text::standing_words(s, &site.targets[s.target], system);
                     lines.extend(wrapped(&words, width, 2).into_iter().map(|l| (l, Role::Plain)));
                 }
+            } else if let Some(Err(failure)) = session.answer(session.draft().at) {
+                let words = super::failure_words(failure, model.system());
+                lines.extend(wrapped(&words, width, 2).into_iter().map(|l| (l, Role::Outside)));
             }
         }
     }

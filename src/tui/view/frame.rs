@@ -15,7 +15,7 @@ use ratatui::layout::{Position, Rect};
 use unicode_width::UnicodeWidthStr;
 
 use crate::problem::harmless;
-use crate::report::caution_within;
+use crate::report::{caution_within, days};
 use crate::tasks::{Context, Freshness};
 use crate::units::{Dimension, System, show};
 
@@ -74,7 +74,7 @@ pub(super) fn draw(model: &Model, parts: &Parts, buf: &mut Buffer) {
             head(model, session, parts.head, buf);
             tabs(model, session, parts.tabs, buf);
         }
-        Stage::Opening => {
+        Stage::Opening { .. } => {
             put(buf, parts.head, 0, 0, "gatemix", look.style(Role::Strong));
             let what = model.asked.site.as_deref().map_or_else(|| "the demonstration".to_owned(), harmless);
             put(buf, parts.body, 0, 1, &format!("opening {what} ..."), look.style(Role::Plain));
@@ -172,7 +172,7 @@ fn facts(
     );
     let age = context.age_days.map_or_else(String::new, |d| {
         let old = if to_the_hour { " old" } else { "" };
-        format!(", {d:.0} days{old}")
+        format!(", {}{old}", days(d))
     });
     let badge = match badge {
         Freshness::Fresh => ("[fresh]".to_owned(), Role::Inside),
@@ -231,7 +231,7 @@ pub(super) fn is_old(model: &Model) -> bool {
 }
 
 /// What is being computed, or why the newest question has no answer.
-fn status(model: &Model, session: &Session) -> (String, Role) {
+pub(super) fn status(model: &Model, session: &Session) -> (String, Role) {
     if is_old(model) {
         let before = if session.shown.is_some() { "; what is shown is from before" } else { " ..." };
         return (format!("computing{before}"), Role::Warn);

@@ -15,9 +15,10 @@ use super::super::look::{Role, Symbols, Theme};
 use super::super::model::{Choice, Field, Model, Over, Typed};
 use super::write::{cut, put, row_style, wrapped};
 
-/// Lines of the help.
-pub(in crate::tui) fn help_lines() -> usize {
-    help().len()
+/// Lines the help can be scrolled to on a terminal so many rows high.
+pub(in crate::tui) fn help_lines(rows: u16) -> usize {
+    // the caution and the box take five rows
+    (help().len() + 1).saturating_sub(usize::from(rows.saturating_sub(5)))
 }
 
 /// The help, made from the table of keys: heading or key and words.

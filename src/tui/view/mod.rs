@@ -55,8 +55,8 @@ pub fn draw(model: &Model, area: Rect, buf: &mut Buffer) -> Option<Position> {
         let parts = frame::parts(model, area);
         frame::draw(model, &parts, buf);
         match &model.stage {
-            Stage::Opening => {}
-            Stage::Sites { list, at } => lists::sites(model, list, *at, parts.body, buf),
+            Stage::Opening { .. } => {}
+            Stage::Sites { list, at, .. } => lists::sites(model, list, *at, parts.body, buf),
             Stage::Broken { problems, system, scroll, kept } => {
                 lists::problems(model, problems, *system, *scroll, kept.is_some(), parts.body, buf);
             }
@@ -88,7 +88,7 @@ pub fn hit(model: &Model, column: u16, row: u16) -> Option<Hit> {
             Screen::Mix => mix::hit(model, session, parts.body, at),
             Screen::Rank => rank::hit(model, session, parts.body, at),
         },
-        Stage::Opening | Stage::Broken { .. } => None,
+        Stage::Opening { .. } | Stage::Broken { .. } => None,
     }
 }
 
@@ -96,6 +96,12 @@ pub fn hit(model: &Model, column: u16, row: u16) -> Option<Hit> {
 pub(super) fn rank_rows(model: &Model) -> usize {
     let area = Rect::new(0, 0, model.size.0, model.size.1);
     model.session().map_or(0, |session| rank::last(model, session, frame::parts(model, area).body))
+}
+
+/// The furthest that what is said on the mix screen can be scrolled.
+pub(super) fn mix_rows(model: &Model) -> usize {
+    let area = Rect::new(0, 0, model.size.0, model.size.1);
+    model.session().map_or(0, |session| mix::last_line(model, session, frame::parts(model, area).body))
 }
 
 /// Why there is no answer, in one sentence.

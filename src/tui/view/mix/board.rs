@@ -266,8 +266,13 @@ impl Board<'_> {
                 let passing = asked(self.site(), &given);
                 let flows = passing.flows.iter().map(|g| g.flow_m3s);
                 let total: f64 = flows.chain(passing.totals.iter().map(|t| t.1)).sum();
-                let total = answer.map_or(total, |a| sum(&a.setting).max(total));
-                let now = self.now.as_ref().map(|s| self.flow(sum(s)));
+                // leaks and spill included, as soon as they are computed
+                let total = session.tried_now().map_or(total, |a| a.mix.release.flow_m3s);
+                let of_now = answer.and_then(|a| {
+                    let same = a.change.is_none().then_some(a.mix.release.flow_m3s);
+                    a.now.as_ref().map(|now| now.1.release.flow_m3s).or(same)
+                });
+                let now = self.now.as_ref().map(|s| self.flow(of_now.unwrap_or_else(|| sum(s))));
                 (Cell::Release, now, self.flow(total), "", Some(Of::Whole))
             }
             Row::Pool => {

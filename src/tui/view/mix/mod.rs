@@ -62,6 +62,11 @@ fn parts(model: &Model, session: &Session, area: Rect) -> Parts {
     }
 }
 
+/// The last line that what is said scrolls to.
+pub(super) fn last_line(model: &Model, session: &Session, area: Rect) -> usize {
+    said::last(model, session, parts(model, session, area).said)
+}
+
 /// Draws the mix screen.
 pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
     let Some(shown) = &session.shown else {
@@ -69,7 +74,9 @@ pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffe
             .wrong
             .as_ref()
             .map_or_else(|| "computing ...".into(), |f| failure_words(f, model.system()));
-        put(buf, area, 0, 0, &words, model.look.style(Role::Plain));
+        for (row, line) in (0..area.height).zip(super::write::wrapped(&words, usize::from(area.width), 2)) {
+            put(buf, area, 0, row, &line, model.look.style(Role::Plain));
+        }
         return;
     };
     let parts = parts(model, session, area);
@@ -184,7 +191,13 @@ fn gauge_pair(model: &Model, session: &Session) -> Option<[Gauge; 2]> {
         [(_, flow)] => Some(format!("attainable at {}", show(flow, Dimension::Flow, system, digits(model)))),
         _ => None,
     });
-    let note = if super::frame::is_old(model) { Some("FROM BEFORE, computing".to_owned()) } else { at };
+    let note = if super::frame::is_old(model) {
+        Some("FROM BEFORE, computing".to_owned())
+    } else if session.wrong.is_some() {
+        Some("FROM BEFORE".to_owned())
+    } else {
+        at
+    };
     let noted = |gauge: Gauge| match &note {
         Some(note) => gauge.noted(note.clone()),
         None => gauge,

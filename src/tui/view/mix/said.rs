@@ -15,13 +15,23 @@ use super::super::super::model::{Cell, Model, Session};
 use super::super::failure_words;
 use super::super::write::{put, put_right, wrapped};
 
+/// Whether so many lines scroll, the rows they then have, and the last line to scroll to. What is left has a row of
+/// its own: beside words it would read as one of their figures.
+fn scrolled(lines: usize, height: u16) -> (bool, u16, usize) {
+    let scrolls = lines > usize::from(height) && height > 1;
+    let shown = if scrolls { height - 1 } else { height };
+    (scrolls, shown, lines.saturating_sub(usize::from(shown)))
+}
+
+/// The last line to scroll to.
+pub(super) fn last(model: &Model, session: &Session, area: Rect) -> usize {
+    scrolled(lines(model, session, usize::from(area.width)).len(), area.height).2
+}
+
 /// Draws what is said.
 pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
     let lines = lines(model, session, usize::from(area.width));
-    let scrolls = lines.len() > usize::from(area.height) && area.height > 1;
-    // what is left has a row of its own: beside words it would read as one of their figures
-    let shown = if scrolls { area.height - 1 } else { area.height };
-    let last = lines.len().saturating_sub(usize::from(shown));
+    let (scrolls, shown, last) = scrolled(lines.len(), area.height);
     let from = session.mix.scroll.min(last);
     for (row, (line, role)) in (0..shown).zip(lines.iter().skip(from)) {
         put(buf, area, 0, row, line, model.look.style(*role));
@@ -41,6 +51,9 @@ fn lines(model: &Model, session: &Session, width: usize) -> Vec<(String, Role)> 
         let lines = wrapped(&text, width, 2);
         out.extend(lines.into_iter().map(|l| (l, role)));
     };
+    if let Some(failure) = &session.wrong {
+        say(format!("! no answer to the last change: {}", failure_words(failure, system)), Role::Outside);
+    }
     let answer = match session.answer(session.draft().at) {
         Some(Ok(answer)) => answer,
         Some(Err(failure)) => {
@@ -59,9 +72,17 @@ fn lines(model: &Model, session: &Session, width: usize) -> Vec<(String, Role)> 
     } else {
         say("the setting now".into(), Role::Strong);
     }
+    // limits that are broken and what to beware of come before anything that can be scrolled away
+    for flag in flags_of(&answer.mix.warnings).into_iter().filter(|p| p.weight != Weight::Note) {
+        let role = if flag.kind == "limit" { Role::Outside } else { Role::Warn };
+        say(format!("! {}", flag.advice(system)), role);
+    }
     if let Some(change) = &answer.change {
         let hours = format!("{:.1} crew hours", change.moves.crew_hours);
         say(format!("{}; {hours}", text::moves(context, change, system)), Role::Plain);
+    }
+    if answer.day.is_some() {
+        say("this is the day's longest block; targets are judged over the day".into(), Role::Warn);
     }
     if let Some(words) = ranked_at(session, answer, system) {
         say(words, Role::Plain);
@@ -70,21 +91,14 @@ fn lines(model: &Model, session: &Session, width: usize) -> Vec<(String, Role)> 
         say("* targets as tried here, not as the site file has them".into(), Role::Warn);
     }
     for check in chosen(answer, session.mix.cell) {
-        let (mark, role) = if check.broken() { ("!", Role::Outside) } else { (" ", Role::Plain) };
         let words = harmless(&in_system(&check.words(site), system));
-        let rest = if check.broken() {
-            format!("; {}", check.cure())
-        } else {
-            check
-                .spare()
-                .map_or_else(String::new, |spare| format!("; {} to spare", in_system(&spare, system)))
-        };
-        say(format!("{mark} {words}{rest}"), role);
+        let spare = check
+            .spare()
+            .map_or_else(String::new, |spare| format!("; {} to spare", in_system(&spare, system)));
+        say(format!("  {words}{spare}"), Role::Plain);
     }
-    for problem in flags_of(&answer.mix.warnings) {
-        let (mark, role) =
-            if problem.weight == Weight::Note { ("-", Role::Plain) } else { ("!", Role::Warn) };
-        say(format!("{mark} {}", problem.advice(system)), role);
+    for note in flags_of(&answer.mix.warnings).into_iter().filter(|p| p.weight == Weight::Note) {
+        say(format!("- {}", note.advice(system)), Role::Plain);
     }
     if answer.mix.not_checked.is_empty() {
         say("every limit of the site file is checked".into(), Role::Plain);
@@ -104,12 +118,12 @@ fn ranked_at(session: &Session, answer: &MixAnswer, system: System) -> Option<St
     (set != wanted).then(|| format!("this releases {set}; ranking and attainable are of {wanted}"))
 }
 
-/// Limits of what is chosen.
+/// Limits of what is chosen that are kept; those broken are told before.
 fn chosen(answer: &MixAnswer, cell: Cell) -> Vec<&Check> {
     let of = match cell {
         Cell::Opening(i) | Cell::Flow(i) => Of::Outlet(i),
         Cell::Total(i) => Of::Well(i),
         _ => Of::Whole,
     };
-    answer.mix.limits.iter().filter(|c| c.of == of).collect()
+    answer.mix.limits.iter().filter(|c| c.of == of && !c.broken()).collect()
 }

@@ -56,7 +56,7 @@ fn age(context: &Context) -> String {
         other => format!("! {}", other.word().to_uppercase()),
     };
     match context.age_days.filter(|days| *days >= 0.0) {
-        Some(days) => format!("{days:.0} days old: {word}; "),
+        Some(days) => format!("{} old: {word}; ", crate::report::days(days)),
         None => format!("{word}; "),
     }
 }
