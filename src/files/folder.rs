@@ -1,6 +1,7 @@
 //! A site folder, on disk or inside the binary: its site file, its casts, the fingerprint of what was read.
 
 use std::path::{Path, PathBuf};
+use std::sync::{Arc, OnceLock};
 
 use chrono::{DateTime, FixedOffset};
 use sha2::{Digest, Sha256};
@@ -40,6 +41,8 @@ pub struct Folder {
     /// Flags and notes on the site file.
     pub notes: Vec<Problem>,
     source: Source,
+    /// Every cast, once they were asked for.
+    casts: Arc<OnceLock<Vec<Listed>>>,
 }
 
 /// Why a site cannot be opened, and the units its user reads.
@@ -120,7 +123,7 @@ impl Folder {
         let mut notes = read.problems;
         notes.extend(source.note());
         match read.site {
-            Some(site) => Ok(Self { root, site, notes, source }),
+            Some(site) => Ok(Self { root, site, notes, source, casts: Arc::default() }),
             None => Err(Refused { problems: notes, system: read.system }),
         }
     }
@@ -130,24 +133,24 @@ impl Folder {
         matches!(self.root, Root::Inside(_))
     }
 
-    /// Reads every cast of the folder, ordered by time and file name; casts without a time come first.
-    pub fn casts(&self) -> Vec<Listed> {
-        let mut casts: Vec<Listed> = self
-            .cast_sources()
-            .into_iter()
-            .map(|(name, source)| match source {
+    /// Every cast of the folder, ordered by time and file name; casts without a time come first. They are read once:
+    /// this folder and what is cloned from it know them as they were then.
+    pub fn casts(&self) -> &[Listed] {
+        self.casts.get_or_init(|| {
+            let listed = |(name, source)| match source {
                 Err(problem) => Listed { file: name, raw: None, problems: vec![problem], source: None },
                 Ok(source) => {
                     let (raw, problems) = cast(&source, &self.site, &self.told(&name));
                     Listed { file: name, raw, problems, source: Some(source) }
                 }
-            })
-            .collect();
-        casts.sort_by(|a, b| {
-            let taken = |l: &Listed| l.raw.as_ref().and_then(|r| r.taken);
-            taken(a).cmp(&taken(b)).then_with(|| a.file.cmp(&b.file))
-        });
-        casts
+            };
+            let mut casts: Vec<Listed> = self.cast_sources(|_| true).into_iter().map(listed).collect();
+            casts.sort_by(|a, b| {
+                let taken = |l: &Listed| l.raw.as_ref().and_then(|r| r.taken);
+                taken(a).cmp(&taken(b)).then_with(|| a.file.cmp(&b.file))
+            });
+            casts
+        })
     }
 
     /// What a folder lacks that its site file counts on: any cast at all, and each cast it lists.
@@ -182,18 +185,22 @@ impl Folder {
         listed.map_or_else(Told::default, |c| Told { taken: c.taken.clone(), pool_m: c.pool_m })
     }
 
-    fn cast_sources(&self) -> Vec<(String, Result<Source, Problem>)> {
+    /// The casts of the folder whose names are wanted, as they are now.
+    fn cast_sources(&self, wanted: impl Fn(&str) -> bool) -> Vec<(String, Result<Source, Problem>)> {
         match &self.root {
             Root::Inside(name) => demonstration_files()
                 .into_iter()
                 .filter_map(|(path, _)| Some(path.to_str()?.to_owned()))
                 .filter(|path| path.starts_with(&format!("{name}/profiles/")) && is_csv(Path::new(path)))
+                .filter(|path| wanted(path))
                 .filter_map(|path| Some((path.clone(), inside(&path)?)))
                 .collect(),
-            Root::Disk(root) => {
-                let read = |p: PathBuf| (p.display().to_string(), text::read(&p, Format::Csv));
-                cast_paths(root).into_iter().map(read).collect()
-            }
+            Root::Disk(root) => cast_paths(root)
+                .into_iter()
+                .map(|path| (path.display().to_string(), path))
+                .filter(|(name, _)| wanted(name))
+                .map(|(name, path)| (name, text::read(&path, Format::Csv)))
+                .collect(),
         }
     }
 
@@ -203,9 +210,8 @@ impl Folder {
     /// # Errors
     /// Its problems, or that there is none.
     pub fn newest(&self, pool_m: Option<f64>) -> Result<Read, Vec<Problem>> {
-        let mut casts = self.casts();
         let mut flags = Vec::new();
-        for broken in casts.iter().filter(|c| c.raw.is_none()) {
+        for broken in self.casts().iter().filter(|c| c.raw.is_none()) {
             let first = broken.problems.iter().max_by_key(|p| p.weight);
             flags.push(
                 Problem::flag(
@@ -218,8 +224,8 @@ impl Folder {
                 .in_file(&broken.file),
             );
         }
-        casts.retain(|c| c.raw.is_some());
-        let Some(newest) = casts.pop() else {
+        let mut sound = self.casts().iter().rev().filter(|c| c.raw.is_some());
+        let Some((newest, source)) = sound.next().and_then(|c| Some((c, c.source.clone()?))) else {
             let all_broken = !flags.is_empty();
             let problem = Problem::refused(
                 "no-cast",
@@ -228,13 +234,13 @@ impl Folder {
             );
             return Err(self
                 .casts()
-                .into_iter()
-                .flat_map(|c| c.problems)
+                .iter()
+                .flat_map(|c| c.problems.iter().cloned())
                 .filter(|p| p.weight == crate::problem::Weight::Refused)
                 .chain([problem])
                 .collect());
         };
-        let same = casts.iter().rev().take_while(|c| {
+        let same = sound.take_while(|c| {
             c.raw.as_ref().and_then(|r| r.taken) == newest.raw.as_ref().and_then(|r| r.taken)
         });
         let same: Vec<&str> = same.map(|c| c.file.as_str()).collect();
@@ -248,8 +254,7 @@ impl Folder {
                 .in_file(&newest.file),
             );
         }
-        let Some(source) = newest.source else { return Err(newest.problems) };
-        self.held(newest.raw, source, newest.problems, pool_m, flags)
+        self.held(newest.raw.as_ref(), source, newest.problems.clone(), pool_m, flags)
     }
 
     /// Reads one cast: a path, a file name in `profiles`, or `-` for standard input.
@@ -257,10 +262,8 @@ impl Folder {
     /// # Errors
     /// Every problem of it.
     pub fn cast(&self, named: &str, taken: Option<&str>, pool_m: Option<f64>) -> Result<Read, Vec<Problem>> {
-        let within = self.cast_sources().into_iter().find(|(name, _)| {
-            Path::new(name).file_name().and_then(|n| n.to_str()) == Some(named) && !Path::new(named).exists()
-        });
-        let source = match within {
+        let within = |name: &str| base(name) == named && !Path::new(named).exists();
+        let source = match self.cast_sources(within).pop() {
             Some((_, source)) => source,
             None => text::read(Path::new(named), Format::Csv),
         }
@@ -270,7 +273,7 @@ impl Folder {
             told.taken = Some(taken.to_owned());
         }
         let (raw, problems) = cast(&source, &self.site, &told);
-        self.held(raw, source, problems, pool_m, Vec::new())
+        self.held(raw.as_ref(), source, problems, pool_m, Vec::new())
     }
 
     /// Reads one cast of the folder under its own pool, by its file as listed or the last part of it.
@@ -278,26 +281,26 @@ impl Folder {
     /// # Errors
     /// Every problem of it, or that there is none.
     pub fn own_cast(&self, file: &str) -> Result<Read, Vec<Problem>> {
-        let own = self.cast_sources().into_iter().find(|(name, _)| name == file || base(name) == file);
+        let own = self.cast_sources(|name| name == file || base(name) == file).pop();
         let (name, source) = own.ok_or_else(|| {
             vec![Problem::refused("missing-file", "there is no such cast in `profiles`", "").in_file(file)]
         })?;
         let source = source.map_err(|p| vec![p])?;
         let (raw, problems) = cast(&source, &self.site, &self.told(&name));
-        self.held(raw, source, problems, None, Vec::new())
+        self.held(raw.as_ref(), source, problems, None, Vec::new())
     }
 
     /// Holds a raw cast against the site and moves it to the pool asked for.
     fn held(
         &self,
-        raw: Option<Raw>,
+        raw: Option<&Raw>,
         source: Source,
         mut problems: Vec<Problem>,
         pool_m: Option<f64>,
         flags: Vec<Problem>,
     ) -> Result<Read, Vec<Problem>> {
         let Some(raw) = raw else { return Err(problems) };
-        let (profile, found) = Profile::build(&raw, &self.site, pool_m);
+        let (profile, found) = Profile::build(raw, &self.site, pool_m);
         problems.extend(found);
         let Some(mut profile) = profile else { return Err(problems) };
         problems.extend(flags);
@@ -369,8 +372,8 @@ pub fn check(named: &str) -> (Vec<Problem>, System) {
         Ok(folder) => {
             let mut problems = folder.notes.clone();
             let casts = folder.casts();
-            problems.extend(folder.casts_said(&casts));
-            for listed in &casts {
+            problems.extend(folder.casts_said(casts));
+            for listed in casts {
                 problems.extend(folder.profile_of(listed).1);
             }
             (problems, folder.site.units.system())

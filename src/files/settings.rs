@@ -9,7 +9,7 @@ use serde::Serialize;
 use crate::problem::{Problem, Weight};
 
 use super::atomic;
-use super::cursor::{Map, Walk};
+use super::cursor::Walk;
 use super::text::{self, Format};
 use super::yaml::Document;
 
@@ -43,36 +43,39 @@ pub fn load() -> (Settings, Vec<Problem>) {
 
 /// As [`load`], from a file.
 pub fn load_from(path: &Path) -> (Settings, Vec<Problem>) {
-    let read = match text::read(path, Format::Yaml) {
-        Err(problem) if problem.kind == "missing-file" => return Default::default(),
-        Err(problem) => Err(vec![problem]),
-        Ok(source) => match Document::parse(&source.text) {
-            Err(problem) => Err(vec![problem.in_file(&source.name)]),
-            Ok(document) => Ok(settings(&document, &source.name)),
-        },
-    };
-    let (settings, problems) = read.unwrap_or_else(|problems| (Settings::default(), problems));
+    let (settings, problems) = read(path).unwrap_or_else(|problems| (Settings::default(), problems));
     // the screens open all the same
     (settings, problems.into_iter().map(|p| Problem { weight: Weight::Flag, ..p }).collect())
 }
 
-fn settings(document: &Document, file: &str) -> (Settings, Vec<Problem>) {
-    let walk = Walk::new(document);
-    let word = |map: &Map, key| map.optional(key).and_then(|v| v.text().map(str::to_owned));
-    let settings = walk.root().map().map_or_else(Settings::default, |map| {
+/// The choices of a file and what is wrong with some of them; or why it cannot be read at all.
+fn read(path: &Path) -> Result<(Settings, Vec<Problem>), Vec<Problem>> {
+    let source = match text::read(path, Format::Yaml) {
+        Err(problem) if problem.kind == "missing-file" => return Ok(Default::default()),
+        read => read.map_err(|problem| vec![problem])?,
+    };
+    let document = Document::parse(&source.text).map_err(|problem| vec![problem.in_file(&source.name)])?;
+    let walk = Walk::new(&document);
+    let settings = walk.root().map().map(|map| {
+        let word = |key| map.optional(key).and_then(|v| v.text().map(str::to_owned));
         let settings = Settings {
-            units: word(&map, "units"),
-            symbols: word(&map, "symbols"),
-            theme: word(&map, "theme"),
+            units: word("units"),
+            symbols: word("symbols"),
+            theme: word("theme"),
             mouse: map.optional("mouse").and_then(|v| v.boolean()),
         };
         map.finish();
         settings
     });
-    (settings, walk.problems(file))
+    let problems = walk.problems(&source.name);
+    match settings {
+        Some(settings) => Ok((settings, problems)),
+        None => Err(problems),
+    }
 }
 
-/// Saves the settings of this user whole or not at all, in place of what was there; the folder is made.
+/// Saves the settings of this user whole or not at all, in place of what was there; the folder is made. A file that
+/// cannot be read is left as it is: it may hold more than a slip of the pen.
 ///
 /// # Errors
 /// `no-home` for a user without one, `cannot-write` naming what cannot be written.
@@ -90,6 +93,11 @@ pub fn save_to(path: &Path, settings: &Settings) -> Result<(), Problem> {
     let text = serde_yaml::to_string(settings).map_err(|error| {
         Problem::refused("cannot-write", error.to_string(), "").in_file(path.display().to_string())
     })?;
+    if let Some(why) = read(path).err().and_then(|p| p.into_iter().next()).filter(|p| p.kind != "empty") {
+        let words = format!("a file that cannot be read cannot be written over: {}", why.words);
+        let problem = Problem::refused("cannot-write", words, "mend or delete it");
+        return Err(Problem { place: why.place, ..problem });
+    }
     path.parent().map_or(Ok(()), atomic::folder)?;
     atomic::write(path, format!("# what gatemix remembers; its screens write this file\n{text}").as_bytes())
 }

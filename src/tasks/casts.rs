@@ -36,8 +36,8 @@ impl Cast {
 pub fn casts(context: &Context) -> Vec<Cast> {
     let mut out: Vec<Cast> = Vec::new();
     for listed in context.folder.casts() {
-        let (profile, mut problems) = context.folder.profile_of(&listed);
-        let pool = profile.zip(listed.source).map(|(profile, source)| {
+        let (profile, mut problems) = context.folder.profile_of(listed);
+        let pool = profile.zip(listed.source.clone()).map(|(profile, source)| {
             let read = Read { profile, source };
             let own =
                 Context::of(context.folder.clone(), read, (context.on, context.on_from), context.system);
@@ -52,7 +52,12 @@ pub fn casts(context: &Context) -> Vec<Cast> {
         if let Some((own, _)) = &pool {
             problems.clone_from(&own.profile.flags);
         }
-        out.push(Cast { file: listed.file, taken: listed.raw.and_then(|raw| raw.taken), pool, problems });
+        out.push(Cast {
+            file: listed.file.clone(),
+            taken: listed.raw.as_ref().and_then(|raw| raw.taken),
+            pool,
+            problems,
+        });
     }
     out
 }

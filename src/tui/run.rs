@@ -11,22 +11,24 @@ use std::time::Duration;
 use chrono::Utc;
 use crossterm::event::{Event as TermEvent, poll, read};
 
-use crate::files::folder::{Stamps, demonstrations, sites_in, stamps};
-use crate::files::settings::{self, Settings};
+use crate::files::folder::{demonstrations, sites_in, stamps};
+use crate::files::settings;
 use crate::problem::Problem;
 use crate::tasks::{self, Asked};
 use crate::units::System;
 
-use super::look::{Look, Symbols, Theme};
-use super::model::{Choice, Likes, Message, Model, Stage};
+use super::errands::Errands;
+use super::likes::Kept;
+use super::model::{Choice, Message, Model, Stage};
 use super::terminal::{self, Taken};
 use super::update::{Effect, Event, begin, update};
 use super::view::draw;
-use super::work::{Lane, Worker};
+use super::work::{Lane, Seen, Worker};
 
-/// How long the keyboard is listened to at a time.
+/// How long the keyboard is listened to at a time (choice: the longest wait before the keys go to a shell).
 const LISTEN: Duration = Duration::from_millis(200);
-/// How often progress is drawn, how often an idle program looks whether it is to end, and how often at the files.
+/// How often progress is drawn, how often an idle program looks whether it is to end, and how often at the files
+/// (choices: what seems at once, and next to no work).
 const BUSY: Duration = Duration::from_millis(100);
 const IDLE: Duration = Duration::from_millis(250);
 const FILES: Duration = Duration::from_secs(1);
@@ -55,12 +57,18 @@ pub fn run(asked: Asked) -> Result<(), Problem> {
 }
 
 fn on_terminal(asked: Asked) -> io::Result<()> {
-    let (kept, problems) = settings::load();
-    let likes = likes(&kept);
+    let (words, mut problems) = settings::load();
+    let file = settings::path().map(|path| path.display().to_string()).unwrap_or_default();
+    let (kept, unknown) = Kept::of(words, terminal::symbols(), &file);
+    problems.extend(unknown);
+    let likes = kept.likes;
     let (send, arrivals) = channel();
+    // before the terminal is taken: a signal then must not leave it taken
+    let end = signals()?;
     let mut taken = Taken::take(!likes.no_mouse)?;
     let mut model = Model::new(asked, likes, terminal::colours(), taken.size(), Utc::now());
-    model.message = problems.first().map(|p| Message { words: p.text(System::default()), wrong: true });
+    let said: Vec<String> = problems.iter().map(|p| p.text(System::default())).collect();
+    model.message = (!said.is_empty()).then(|| Message { words: said.join("; "), wrong: true });
     let worker = |send: &Sender<Arrived>| {
         let send = send.clone();
         Worker::start(move |sent| _ = send.send(Arrived::Event(Event::Sent(sent))))
@@ -69,12 +77,16 @@ fn on_terminal(asked: Asked) -> io::Result<()> {
         quick: worker(&send),
         long: worker(&send),
         aside: worker(&send),
+        errands: {
+            let send = send.clone();
+            Errands::start(move |event| _ = send.send(Arrived::Event(event)))
+        },
+        kept,
         watched: Arc::default(),
         send: send.clone(),
     };
     watch(&outside.watched, send.clone());
     let paused = Arc::new(AtomicBool::new(false));
-    let end = signals()?;
     listen(send, Arc::clone(&paused));
     let mut effects = start(&mut model);
     loop {
@@ -83,6 +95,9 @@ fn on_terminal(asked: Asked) -> io::Result<()> {
                 paused.store(true, Ordering::Relaxed);
                 taken.suspend()?;
                 paused.store(false, Ordering::Relaxed);
+                // the size may be another by now, and nobody told
+                let (columns, rows) = taken.size();
+                outside.answer(Event::Resize(columns, rows));
             } else if outside.perform(effect, &mut taken)? {
                 return Ok(());
             }
@@ -142,15 +157,14 @@ fn wait(arrivals: &Receiver<Arrived>, model: &mut Model, end: &AtomicBool) -> Op
     }
 }
 
-/// What is watched: what was named, and how its files stood.
-type Watched = (String, Stamps);
-
 /// What effects reach.
 struct Outside {
     quick: Worker,
     long: Worker,
     aside: Worker,
-    watched: Arc<Mutex<Option<Watched>>>,
+    errands: Errands,
+    kept: Kept,
+    watched: Arc<Mutex<Option<Seen>>>,
     send: Sender<Arrived>,
 }
 
@@ -160,21 +174,19 @@ impl Outside {
         match effect {
             Effect::Ask(generation, work) => self.worker(work.lane()).ask(generation, work),
             Effect::Stop(lane, generation) => self.worker(lane).stop(generation),
-            Effect::Watch(named) => {
-                let seen = stamps(&named);
-                *self.watched.lock().unwrap_or_else(PoisonError::into_inner) = Some((named, seen));
+            Effect::Watch(seen) => {
+                *self.watched.lock().unwrap_or_else(PoisonError::into_inner) = Some(seen);
             }
-            Effect::List(folder) => self.answer(Event::Sites(sites(folder.as_deref()))),
-            Effect::NewSite(folder, system) => {
+            Effect::List(folder) => self.errands.run(move || Some(Event::Sites(sites(folder.as_deref())))),
+            Effect::NewSite(folder, system) => self.errands.run(move || {
                 let made = tasks::new(Path::new(&folder), system).map(|_| folder);
-                self.answer(Event::Made(made));
-            }
+                Some(Event::Made(made))
+            }),
             Effect::Copy(text) => taken.copy(&text)?,
             Effect::Keep(likes) => {
                 taken.mouse(!likes.no_mouse)?;
-                if let Err(problem) = settings::save(&kept(likes)) {
-                    self.answer(Event::Said(problem));
-                }
+                let words = self.kept.words(likes);
+                self.errands.run(move || settings::save(&words).err().map(Event::Said));
             }
             Effect::Quit => return Ok(true),
             Effect::Suspend => {}
@@ -196,18 +208,17 @@ impl Outside {
     }
 }
 
-/// The sites of a folder, of this one where none is named, then the demonstrations.
+/// The sites of a folder, of this one where none is named, then the demonstrations that can be opened by name.
 pub fn sites(folder: Option<&str>) -> Vec<Choice> {
     let found = sites_in(Path::new(folder.unwrap_or("."))).into_iter().map(|f| Choice {
         name: f.name,
         named: f.path.display().to_string(),
         demonstration: false,
     });
-    let inside = demonstrations().into_iter().map(|name| Choice {
-        name: name.to_owned(),
-        named: name.to_owned(),
-        demonstration: true,
-    });
+    // what is there on disk is opened in place of a demonstration of its name
+    let free = demonstrations().into_iter().filter(|name| !Path::new(name).exists());
+    let inside =
+        free.map(|name| Choice { name: name.to_owned(), named: name.to_owned(), demonstration: true });
     found.chain(inside).collect()
 }
 
@@ -254,7 +265,7 @@ fn listen(send: Sender<Arrived>, paused: Arc<AtomicBool>) {
 }
 
 /// Looks each second whether the files of the site watched differ from what they were.
-fn watch(watched: &Arc<Mutex<Option<Watched>>>, send: Sender<Arrived>) {
+fn watch(watched: &Arc<Mutex<Option<Seen>>>, send: Sender<Arrived>) {
     let watched = Arc::clone(watched);
     thread::spawn(move || {
         loop {
@@ -274,30 +285,4 @@ fn watch(watched: &Arc<Mutex<Option<Watched>>>, send: Sender<Arrived>) {
             }
         }
     });
-}
-
-/// What the settings of the user mean.
-fn likes(kept: &Settings) -> Likes {
-    let symbols = Symbols::NAMES.iter().find(|n| Some(n.0) == kept.symbols.as_deref());
-    let theme = Theme::NAMES.iter().find(|n| Some(n.0) == kept.theme.as_deref());
-    Likes {
-        units: match kept.units.as_deref() {
-            Some("us") => Some(System::Us),
-            Some("si") => Some(System::Si),
-            _ => None,
-        },
-        look: Look {
-            symbols: symbols.map_or_else(terminal::symbols, |n| n.1),
-            theme: theme.map_or_else(Theme::default, |n| n.1),
-        },
-        no_mouse: kept.mouse == Some(false),
-    }
-}
-
-/// The words in which they are kept.
-fn kept(likes: Likes) -> Settings {
-    let symbols = Symbols::NAMES.iter().find(|n| n.1 == likes.look.symbols).map(|n| n.0.to_owned());
-    let theme = Theme::NAMES.iter().find(|n| n.1 == likes.look.theme).map(|n| n.0.to_owned());
-    let units = likes.units.map(|u| if u == System::Us { "us" } else { "si" }.to_owned());
-    Settings { units, symbols, theme, mouse: Some(!likes.no_mouse) }
 }

@@ -91,10 +91,16 @@ pub(super) struct Taken {
 impl Taken {
     /// Takes the terminal.
     pub(super) fn take(mouse: bool) -> io::Result<Self> {
-        let held = Held::default();
-        enter(mouse)?;
         give_back_on_panic();
-        Ok(Self { terminal: Terminal::new(CrosstermBackend::new(held.clone()))?, held, mouse })
+        let held = Held::default();
+        // nobody else gives back what is taken only half-way
+        match enter(mouse).and_then(|()| blank(&held)) {
+            Ok(terminal) => Ok(Self { terminal, held, mouse }),
+            Err(error) => {
+                give_back();
+                Err(error)
+            }
+        }
     }
 
     /// Columns and rows.
@@ -129,7 +135,9 @@ impl Taken {
         give_back();
         signal_hook::low_level::raise(signal_hook::consts::SIGTSTP)?;
         enter(self.mouse)?;
-        self.terminal.clear()
+        // the screen just entered is blank; to clear it would ask where the cursor is, which not every terminal answers
+        self.terminal = blank(&self.held)?;
+        Ok(())
     }
 
     /// Where there is no such signal nothing happens.
@@ -143,6 +151,11 @@ impl Drop for Taken {
     fn drop(&mut self) {
         give_back();
     }
+}
+
+/// Frames on a blank screen.
+fn blank(held: &Held) -> io::Result<Terminal<CrosstermBackend<Held>>> {
+    Terminal::new(CrosstermBackend::new(held.clone()))
 }
 
 fn enter(mouse: bool) -> io::Result<()> {

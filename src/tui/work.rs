@@ -10,6 +10,7 @@ use std::thread;
 
 use chrono::{DateTime, Utc};
 
+use crate::files::folder::{Stamps, stamps};
 use crate::problem::Problem;
 use crate::tasks::rank::{RankAnswer, RankAsked, rank};
 use crate::tasks::{
@@ -91,11 +92,14 @@ pub struct Computed {
     pub solved: Option<(Given, Result<Solved, Failure>)>,
 }
 
+/// What was named, and how its files stood before they were read.
+pub type Seen = (String, Stamps);
+
 /// An answer.
 #[derive(Debug)]
 pub enum Done {
-    /// A site opened.
-    Opened(Result<Arc<Context>, Failure>),
+    /// A site opened; with what is to be watched, where a site was named.
+    Opened(Result<Arc<Context>, Failure>, Option<Seen>),
     /// Pool and settings.
     Mixed(Result<Box<Computed>, Failure>),
     /// The ranking, with what it was made for.
@@ -117,7 +121,14 @@ impl Work {
     /// The answer; `progress` is told how much is done and may stop it.
     pub fn perform(self, progress: &(dyn Fn(f64) -> ControlFlow<()> + Sync)) -> Done {
         match self {
-            Self::Open(asked, clock) => Done::Opened(open(&asked, clock).map(Arc::new)),
+            Self::Open(asked, clock) => {
+                // looked at first: what changes while it is read is noticed too
+                let seen = asked.site.clone().map(|named| {
+                    let seen = stamps(&named);
+                    (named, seen)
+                });
+                Done::Opened(open(&asked, clock).map(Arc::new), seen)
+            }
             Self::Mix { on, tries, solve } => Done::Mixed(computed(on, tries, solve).map(Box::new)),
             Self::Rank { base, changed, asked } => Done::Ranked(base.changed(&changed).and_then(|context| {
                 let answer = rank(&context, &asked, progress)?;
@@ -137,7 +148,7 @@ impl Work {
         match lane {
             Lane::Long => Done::Ranked(Err(failure)),
             Lane::Aside => Done::Casts(Err(failure)),
-            Lane::Quick if opening => Done::Opened(Err(failure)),
+            Lane::Quick if opening => Done::Opened(Err(failure), None),
             Lane::Quick => Done::Mixed(Err(failure)),
         }
     }

@@ -83,11 +83,20 @@ fn scenario_a_broken_settings_file_is_one_flag_and_the_usual() {
         assert_eq!(kinds, [(Weight::Flag, kind)]);
         assert_eq!(problems[0].place.file.as_deref(), path.to_str());
         assert_eq!(fs::read(&path).unwrap(), bytes);
+        let saved = save_to(&path, &chosen());
+        if kind == "empty" {
+            saved.unwrap();
+            continue;
+        }
+        let problem = saved.unwrap_err();
+        assert_eq!((problem.kind, problem.place.file.as_deref()), ("cannot-write", path.to_str()));
+        assert!(problem.words.contains("cannot be written over"), "{}", problem.words);
+        assert_eq!(fs::read(&path).unwrap(), bytes, "what cannot be read is the user's");
     }
     fs::remove_file(&path).unwrap();
     fs::create_dir(&path).unwrap();
     assert_eq!(load_from(&path).1[0].kind, "folder");
-    assert!(save_to(&path, &chosen()).unwrap_err().words.contains("cannot be written"));
+    assert_eq!(save_to(&path, &chosen()).unwrap_err().kind, "cannot-write");
 }
 
 #[test]

@@ -19,6 +19,9 @@ const CTRL_C: &str = "\u{3}";
 /// through a signal to both.
 const SHELL: &str = r#"trap : TERM INT; stty echo; before=$(stty -g); "$@"; code=$?; echo "before $before"; echo "after $(stty -g)"; echo "ended with $code""#;
 
+/// A shell with job control: the program stops, a line goes to the shell, the program goes on.
+const JOBS: &str = r#"set -m; stty echo; before=$(stty -g); "$@"; echo "stopped as"; jobs -p; echo "raw mode $(test "$before" = "$(stty -g)" && echo gone)"; read line; fg >/dev/null; code=$?; echo "before $before"; echo "after $(stty -g)"; echo "ended with $code""#;
+
 /// The program on what its arguments name, with a folder that is its home and gone afterwards.
 struct Run {
     home: TempDir,
@@ -31,8 +34,12 @@ impl Run {
     }
 
     fn at_home(home: TempDir, arguments: &[&str], no_color: bool, size: (u16, u16)) -> Self {
+        Self::in_shell(SHELL, home, arguments, no_color, size)
+    }
+
+    fn in_shell(shell: &str, home: TempDir, arguments: &[&str], no_color: bool, size: (u16, u16)) -> Self {
         let mut command = Command::new("sh");
-        command.args(["-c", SHELL, "sh", env!("CARGO_BIN_EXE_gatemix")]).args(arguments);
+        command.args(["-c", shell, "sh", env!("CARGO_BIN_EXE_gatemix")]).args(arguments);
         command.current_dir(home.path()).env("HOME", home.path()).env("XDG_CONFIG_HOME", home.path());
         command.env("TERM", "xterm-256color").env_remove("COLORTERM").env("LC_ALL", "C.UTF-8");
         if no_color {
@@ -158,6 +165,47 @@ fn scenario_ctrl_c_quits_while_something_is_typed() {
 }
 
 #[test]
+fn scenario_ctrl_z_gives_the_terminal_to_the_shell_and_coming_back_finds_everything_as_it_was() {
+    let mut run = Run::in_shell(JOBS, tempfile::tempdir().unwrap(), &[], false, (120, 40));
+    let terminal = &mut run.terminal;
+    terminal.wait_for("[1 pool]");
+    terminal.send("2");
+    terminal.wait_for("the setting now");
+    terminal.send(&DOWN.repeat(5));
+    terminal.send(RIGHT);
+    terminal.send("\r");
+    terminal.wait_for("flow of N3");
+    terminal.send("200\r");
+    terminal.wait_for("colder");
+    let told = line_with(terminal, "against now");
+    let begin = told.find("against now").unwrap();
+    let tried = &told[begin..told.find("colder").unwrap()];
+    terminal.send("\u{1a}");
+    terminal.wait("the shell", |s| !s.alternate_screen() && s.contents().contains("raw mode"));
+    let screen = terminal.screen();
+    assert!(!screen.hide_cursor() && !screen.bracketed_paste(), "{}", terminal.text());
+    assert_eq!(screen.mouse_protocol_mode(), MouseProtocolMode::None);
+    terminal.wait_for("raw mode gone");
+    if cfg!(target_os = "linux") {
+        let text = terminal.text();
+        let pid = text.lines().skip_while(|l| !l.starts_with("stopped as")).nth(1).unwrap().trim();
+        let stat = fs::read_to_string(format!("/proc/{pid}/stat"));
+        // proc(5): the state follows the name in brackets
+        assert!(stat.unwrap().contains("(gatemix) T "), "it is not stopped");
+    }
+    // while it was away the terminal became smaller
+    terminal.resize((100, 30));
+    terminal.send("\n");
+    terminal.wait("the screens", |s| s.alternate_screen() && s.contents().contains("[2 mix]"));
+    terminal.wait_for(tried);
+    assert!(terminal.screen().hide_cursor() && terminal.screen().bracketed_paste());
+    terminal.send("1");
+    terminal.wait_for("[1 pool]");
+    terminal.send("q");
+    run.ended();
+}
+
+#[test]
 fn scenario_a_broken_file_shows_its_problems_and_opens_once_it_is_mended() {
     let home = tempfile::tempdir().unwrap();
     let folder = home.path().join("dam");
@@ -191,6 +239,59 @@ fn scenario_settings_outlive_the_program() {
     run.terminal.wait_for("units: SI");
     run.terminal.send("q");
     run.ended();
+}
+
+#[test]
+fn scenario_settings_that_cannot_be_read_are_told_and_not_written_over() {
+    let home = tempfile::tempdir().unwrap();
+    let file = home.path().join("gatemix/settings.yaml");
+    fs::create_dir_all(file.parent().unwrap()).unwrap();
+    let broken = "units: us\ntheme: [mono\n";
+    fs::write(&file, broken).unwrap();
+    let mut run = Run::at_home(home, &[], false, (200, 24));
+    run.terminal.wait_for("settings.yaml:");
+    run.terminal.send(",  ");
+    run.terminal.wait_for("cannot be written over");
+    run.terminal.send(CTRL_C);
+    run.ended();
+    assert_eq!(fs::read_to_string(file).unwrap(), broken);
+}
+
+#[test]
+fn scenario_a_word_of_the_settings_it_does_not_know_is_told_and_left_alone() {
+    let home = tempfile::tempdir().unwrap();
+    let file = home.path().join("gatemix/settings.yaml");
+    fs::create_dir_all(file.parent().unwrap()).unwrap();
+    fs::write(&file, "theme: dark\n").unwrap();
+    let mut run = Run::at_home(home, &[], false, (200, 24));
+    run.terminal.wait_for("settings.yaml: flag: theme: ");
+    run.terminal.wait_for("`dark`");
+    run.terminal.send(", ");
+    run.terminal.wait_for("kept for the next time");
+    run.terminal.send(CTRL_C);
+    run.ended();
+    let kept = fs::read_to_string(file).unwrap();
+    assert!(kept.ends_with("\nunits: us\ntheme: dark\n"), "{kept}");
+}
+
+#[test]
+fn scenario_a_demonstration_hidden_by_a_folder_of_its_name_is_not_listed() {
+    let home = tempfile::tempdir().unwrap();
+    fs::create_dir_all(home.path().join("ashlar")).unwrap();
+    fs::create_dir_all(home.path().join("dam/profiles")).unwrap();
+    fs::write(home.path().join("dam/site.yaml"), SITE).unwrap();
+    let listed = |home: TempDir| {
+        let mut run = Run::at_home(home, &["."], false, (100, 30));
+        run.terminal.wait_for("dam");
+        let text = run.terminal.text();
+        run.terminal.send("q");
+        run.ended();
+        (text.contains("ashlar"), run.home)
+    };
+    let (there, home) = listed(home);
+    assert!(!there, "it would open the folder");
+    fs::remove_dir(home.path().join("ashlar")).unwrap();
+    assert!(listed(home).0, "nothing hides it");
 }
 
 #[test]

@@ -28,7 +28,10 @@ pub(super) fn sent(model: &mut Model, sent: Sent) -> Vec<Effect> {
             }
             *model.under(lane) = None;
             match done {
-                Done::Opened(opened) => self::opened(model, opened),
+                Done::Opened(opened, seen) => {
+                    let effects = self::opened(model, opened);
+                    seen.map(Effect::Watch).into_iter().chain(effects).collect()
+                }
                 Done::Casts(casts) => {
                     if let Some(session) = model.session_mut() {
                         match casts {

@@ -8,7 +8,7 @@ use super::super::look::{Symbols, Theme};
 use super::super::model::{Choice, Field, Likes, Model, Over, Stage, Typed};
 use super::{Effect, change, open, say};
 
-/// Lines of a page.
+/// Lines of a page (choice).
 const PAGE: usize = 10;
 /// Lines of the settings.
 const SETTINGS: [&str; 4] = ["units", "symbols", "colours", "mouse"];

@@ -24,7 +24,7 @@ const TEMPERATURE: [(f64, f64); 2] = [(0.5, 2.0), (0.25, 1.0)];
 const OXYGEN: (f64, f64) = (0.5, 2.0);
 /// The same of an opening without positions, percent (choice).
 const OPENING: (f64, f64) = (5.0, 25.0);
-/// The same of the date, days.
+/// The same of the date, days (choice).
 const DAYS: (u64, u64) = (1, 7);
 /// Lines of a page of what is said (choice).
 const PAGE: usize = 3;

@@ -20,7 +20,7 @@ use crate::units::System;
 use super::keys::{Action, Place, action};
 use super::model::{Choice, Draft, Likes, Message, Model, Over, Screen, Session, Stage, Under};
 use super::view::{answer_text, mix_rows, rank_rows};
-use super::work::{Lane, On, Sent, Work};
+use super::work::{Lane, On, Seen, Sent, Work};
 
 /// A message.
 #[derive(Debug)]
@@ -54,8 +54,8 @@ pub enum Effect {
     Ask(u64, Work),
     /// Stop computing in a lane: nothing of this generation or before is wanted.
     Stop(Lane, u64),
-    /// Notice when the files of a site change.
-    Watch(String),
+    /// Notice when the files of a site differ from what they were.
+    Watch(Seen),
     /// List the sites of a folder, and the demonstrations.
     List(Option<String>),
     /// Make a new site in a folder.
@@ -72,10 +72,8 @@ pub enum Effect {
 
 /// Asks for the site the command line names.
 pub fn begin(model: &mut Model) -> Vec<Effect> {
-    // watched first: what changes while it is read is noticed too
-    let watch = model.asked.site.clone().map(Effect::Watch);
     let work = Work::Open(model.asked.clone(), model.clock);
-    watch.into_iter().chain([ask(model, work)]).collect()
+    vec![ask(model, work)]
 }
 
 /// Opens another site.

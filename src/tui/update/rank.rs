@@ -12,7 +12,7 @@ use super::super::model::{Field, Model, Over, Page, Ranked, Screen, Session, Typ
 use super::mix::TRIES;
 use super::{Effect, ask_rank, change, complain, rank_rows, say};
 
-/// Lines of a page.
+/// Lines of a page (choice).
 const PAGE: usize = 5;
 
 /// Does what a key asks for.

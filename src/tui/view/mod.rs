@@ -22,9 +22,9 @@ use super::model::{Cell, Model, Screen, Stage};
 pub(super) use lists::help_lines;
 pub(super) use pool::{named as cast_named, scrolled as pool_scrolled, stepped_m as pool_stepped_m};
 
-/// Fewer cells than this and only the main figures are shown.
+/// Fewer cells than this and only the main figures are shown (choice: the board and its figures need them).
 const SMALL: (u16, u16) = (72, 20);
-/// Fewer than this and nothing can be.
+/// Fewer than this and nothing can be (choice).
 const LEAST: (u16, u16) = (24, 6);
 
 /// What lies under a place on the screen.

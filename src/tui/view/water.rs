@@ -9,7 +9,7 @@ use crate::withdrawal::{End, Zone};
 
 use super::super::draw::column::{GateMark, GateState, Picture, Water, ZoneMark};
 
-/// Elevations at which the velocity of a zone is read.
+/// Elevations at which the velocity of a zone is read (choice: more than a screen has rows for it).
 const READ: u32 = 60;
 
 /// The curves of a cast. Oxygen is drawn where a reading reaches, in stretches.

@@ -8,6 +8,8 @@ use crate::units::{Dimension, Unit, figure};
 use super::pen::cells;
 use super::{Picture, Water, below, gates};
 
+// Every number here is a choice, made by looking at screens of many sizes.
+
 /// Below this nothing of use can be drawn.
 const LEAST: (u16, u16) = (26, 7);
 /// Rows from which the oxygen axis has its own.
