@@ -114,9 +114,8 @@ fn scenario_an_answer_of_before_is_not_copied_and_is_headed_so() {
     let mut driver = Driver::open(Some(&usual("copied")), SIZE);
     driver.keys("2 y");
     assert_eq!(driver.copied.len(), 1);
-    // the low end above the high one: there is no answer to that
-    driver.keys("Down Down Down Down Down Down Down Down Left Left Left Enter");
-    driver.typed("30").keys("Enter y");
+    // the low end turned above the high one: there is no answer to that
+    driver.keys("Down Down Down Down Down Down Down Down Left Left Left > > > > > > y");
     let text = driver.text();
     assert_eq!(driver.copied.len(), 1, "{text}");
     assert!(text.contains("FROM BEFORE") && text.contains("no answer to the last change"), "{text}");

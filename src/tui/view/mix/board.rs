@@ -106,7 +106,6 @@ pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffe
     put(buf, area, c.now, 0, "set now", look.style(Role::Now));
     let tried = if tries > 1 { format!("try {} of {tries}", session.draft().at + 1) } else { "tried".into() };
     put(buf, area, c.opening, 0, &tried, look.style(Role::Tried));
-    put(buf, area, c.room, 0, "limits", quiet);
     let now = now_setting(session.context()).ok().map(|u| u.setting);
     let board = Board { model, session, now, c };
     let (rows, hidden) = shown_rows(session, area);
@@ -115,6 +114,8 @@ pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffe
     }
     if hidden > 0 {
         put_right(buf, area, area.width, 0, &format!("{hidden} more rows"), quiet);
+    } else {
+        put(buf, area, c.room, 0, "limits", quiet);
     }
 }
 
