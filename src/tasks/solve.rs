@@ -80,7 +80,7 @@ pub(super) fn roots(water: Water, both_m3s: f64, wanted_c: f64) -> (Vec<Root>, [
         let near = |water: &(f64, Option<f64>)| (water.0 - wanted_c).abs() < ROOT_C;
         if let Some((temperature_c, oxygen_mg_l)) = water(share).filter(near) {
             let flows_m3s = [both_m3s * share, both_m3s * (1.0 - share)];
-            roots.push(Root { share, flows_m3s, temperature_c, oxygen_mg_l });
+            roots.push(Root { share, flows_m3s, temperature_c, oxygen_mg_l, breaks: Vec::new() });
         }
     };
     for pair in places.windows(2) {

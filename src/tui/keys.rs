@@ -110,6 +110,8 @@ pub enum Place {
     Sites,
     /// The list of problems of a broken site.
     Problems,
+    /// The help.
+    Help,
     /// Lists laid over a screen.
     List,
     /// While typing.
@@ -118,7 +120,7 @@ pub enum Place {
 
 impl Place {
     /// Every place with its heading in the help.
-    pub const HEADINGS: [(Self, &'static str); 9] = [
+    pub const HEADINGS: [(Self, &'static str); 10] = [
         (Self::Everywhere, "everywhere"),
         (Self::Site, "every screen"),
         (Self::Pool, "pool"),
@@ -126,6 +128,7 @@ impl Place {
         (Self::Rank, "rank"),
         (Self::Sites, "list of sites"),
         (Self::Problems, "problems of the files"),
+        (Self::Help, "this help"),
         (Self::List, "lists and settings"),
         (Self::Field, "while typing"),
     ];
@@ -197,7 +200,7 @@ pub const TABLE: &[Binding] = &[
     on(P::Pool, KeyCode::PageDown, "", "", "", A::PageDown),
     on(P::Pool, KeyCode::Home, "Home End", "", "surface, bed", A::First),
     on(P::Pool, KeyCode::End, "", "", "", A::Last),
-    on(P::Mix, KeyCode::Up, "Arrows", "choose", "choose what to change", A::Up),
+    on(P::Mix, KeyCode::Up, "Arrows", "", "choose what to change", A::Up),
     on(P::Mix, KeyCode::Down, "", "", "", A::Down),
     on(P::Mix, KeyCode::Left, "", "", "", A::Left),
     on(P::Mix, KeyCode::Right, "", "", "", A::Right),
@@ -210,7 +213,7 @@ pub const TABLE: &[Binding] = &[
     on(P::Mix, KeyCode::Enter, "Enter", "type", "type a value, with a unit or without", A::Enter),
     on(P::Mix, Char(' '), "Space", "open/shut", "open the gate fully, or shut it", A::Toggle),
     on(P::Mix, Char('u'), "u", "undo", "take the last change back", A::Undo),
-    on(P::Mix, Char('r'), "r", "redo", "make it again", A::Redo),
+    on(P::Mix, Char('r'), "r", "", "make it again", A::Redo),
     on(
         P::Mix,
         Char('p'),
@@ -263,6 +266,11 @@ pub const TABLE: &[Binding] = &[
     on(P::Problems, KeyCode::PageUp, "", "", "", A::PageUp),
     on(P::Problems, KeyCode::PageDown, "", "", "", A::PageDown),
     on(P::Problems, Char('o'), "o", "other site", "open another site", A::Sites),
+    on(P::Help, KeyCode::Up, "Up Down", "scroll", "scroll", A::Up),
+    on(P::Help, KeyCode::Down, "", "", "", A::Down),
+    on(P::Help, KeyCode::PageUp, "PgUp PgDn", "page", "a page", A::PageUp),
+    on(P::Help, KeyCode::PageDown, "", "", "", A::PageDown),
+    on(P::Help, KeyCode::Enter, "Enter", "close", "close it, as Esc does", A::Enter),
     on(P::List, KeyCode::Up, "Up Down", "choose", "choose a line", A::Up),
     on(P::List, KeyCode::Down, "", "", "", A::Down),
     on(P::List, KeyCode::PageUp, "PgUp PgDn", "", "scroll", A::PageUp),

@@ -51,7 +51,6 @@ fn scenario_escapes_in_a_site_and_its_casts_are_shown_not_sent() {
     harmless(&["mix", site, "--set", "Sluice=30", "--color", "never"], "\\u{1b}[31m");
     harmless(&["rank", site], "\\u{1b}[7m1");
     harmless(&["check", site], "\\u{1b}[31m.csv");
-    harmless(&[site], "\\u{1b}[31m");
 }
 
 #[test]

@@ -140,10 +140,6 @@ fn scenario_a_setting_now_that_cannot_be_shown_says_why() {
             answer["warnings"].as_array().unwrap().iter().find(|w| w["kind"] == "now-not-shown").unwrap();
         assert!(note["text"].as_str().unwrap().contains(why), "{note}");
     }
-    // without a setting now in flows, the folder alone still answers with the pool
-    let bare = with(SITE, "now: { N1: 30, Sluice: 5 }\n", "");
-    let run = run(&[folder(&bare, CAST).named()]);
-    assert_eq!((run.code, run.out.contains("Thermocline at")), (Some(0), true), "{}", run.err);
 }
 
 #[test]

@@ -194,6 +194,7 @@ fn split(site: &Site, split: &PreferredSplit) -> SplitJson {
                 flows_m3s: r.flows_m3s,
                 temperature_c: r.temperature_c,
                 oxygen_mg_l: r.oxygen_mg_l,
+                breaks: r.breaks.iter().map(|c| c.rule.name()).collect(),
             })
             .collect(),
         bracket_c: split.bracket_c,

@@ -161,6 +161,7 @@ pub(super) struct RootJson {
     pub(super) flows_m3s: [f64; 2],
     pub(super) temperature_c: f64,
     pub(super) oxygen_mg_l: Option<f64>,
+    pub(super) breaks: Vec<&'static str>,
 }
 
 #[derive(Serialize)]

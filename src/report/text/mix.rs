@@ -160,7 +160,8 @@ fn against_now(site: &Site, now: &Setting, was: &Mix, tried: &Mix, system: Syste
     out
 }
 
-/// What differs from one mix to another: `temperature 1.7 F colder, oxygen 0.1 mg/L lower`.
+/// What differs from one mix to another, of the figures as they are shown: `temperature 1.7 F colder, oxygen 0.1 mg/L
+/// lower`.
 pub fn difference(was: &Mix, tried: &Mix, system: System) -> String {
     let water = |mix: &Mix| (mix.release.temperature_c, mix.release.oxygen_mg_l);
     apart(water(was), water(tried), system)
@@ -175,13 +176,28 @@ pub fn apart(was: (f64, Option<f64>), is: (f64, Option<f64>), system: System) ->
             format!("{:.1} {unit} {}", by.abs(), words[usize::from(by < 0.0)])
         }
     };
+    let tenths = |value: f64| (10.0 * value).round() / 10.0;
     let unit = system.unit(Dimension::TemperatureDifference);
-    let warmer = unit.from_si(is.0 - was.0);
+    let [then, now] = [was.0, is.0].map(|c| tenths(system.unit(Dimension::Temperature).from_si(c)));
+    let warmer = now - then;
     let mut words = format!("temperature {}", shown(warmer, unit.symbol(), ["warmer", "colder"]));
     if let Some((a, b)) = is.1.zip(was.1) {
-        let _ = write!(words, ", oxygen {}", shown(a - b, "mg/L", ["higher", "lower"]));
+        let _ = write!(words, ", oxygen {}", shown(tenths(a) - tenths(b), "mg/L", ["higher", "lower"]));
     }
     words
+}
+
+/// What wells carry otherwise than now: `North 600 cfs to 120 cfs`; empty where all carry the same to the figure shown.
+pub fn wells_changed(site: &Site, now: &Setting, to: &Setting, system: System) -> String {
+    let total = |setting: &Setting, well: usize| -> f64 {
+        let on = |g: &&Gate| site.outlets[g.outlet].well == Some(well);
+        setting.gates.iter().filter(on).map(|g| g.flow_m3s).sum()
+    };
+    let words = (0..site.wells.len()).filter_map(|well| {
+        let [was, is] = [now, to].map(|setting| flow(total(setting, well), system));
+        (was != is).then(|| format!("{} {was} to {is}", harmless(&site.wells[well].name)))
+    });
+    words.collect::<Vec<_>>().join(", ")
 }
 
 /// A target in words: `48.0 to 56.0 F, preferred 52.0 F, oxygen at least 7.0 mg/L`.

@@ -15,7 +15,9 @@ use crate::tasks::{Context, Freshness, MixAnswer, PoolAnswer};
 use crate::units::{Dimension, System, show};
 
 pub use gates::{instruction, moves, openings};
-pub use mix::{apart, difference, range, release_line, release_words, setting_words, standing_words};
+pub use mix::{
+    apart, difference, range, release_line, release_words, setting_words, standing_words, wells_changed,
+};
 pub use pool::{cold_since_words, layer_words, reach_words, since_words};
 
 use super::column::drawn_column;

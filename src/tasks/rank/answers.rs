@@ -1,6 +1,7 @@
 //! Answers beyond the list: the trade between temperature and oxygen, lost gates, the exact split, the least release,
 //! and what more of it does.
 
+use crate::mix::limits::Check;
 use crate::mix::{Asked, Gate};
 use crate::rank::{Criterion, Progress, Question, Ranked, Ranking, rank as search};
 use crate::tasks::solve::{preferred_c, roots};
@@ -9,6 +10,8 @@ use super::kitchen::Kitchen;
 use super::reasons::{behind, reasons};
 use super::shown::Shown;
 
+/// Ideas computed in full for each that is shown (choice).
+const SPARE_IDEAS: usize = 2;
 /// Steps of the search for the least release (choice: splits of 10 %).
 const LEAST_STEPS: usize = 10;
 /// Releases tried before the least is drawn in, and halvings after (choice).
@@ -56,6 +59,8 @@ pub struct Root {
     pub temperature_c: f64,
     /// Oxygen, mg/L.
     pub oxygen_mg_l: Option<f64>,
+    /// Limits that it breaks, where it was held against any.
+    pub breaks: Vec<Check>,
 }
 
 /// A part of the dam between which and another the release is split.
@@ -112,21 +117,27 @@ pub(super) struct Answers<'a> {
 }
 
 impl Answers<'_> {
-    /// The best of each idea, in full, on all cores.
-    pub(super) fn mixes(&self, top: usize) -> Vec<Shown> {
+    /// The best of each idea, in full, on all cores. What the full computation shows to break a limit by a hair the
+    /// search could not see is left out.
+    pub(super) fn mixes(&self, top: usize) -> Vec<(&Ranked, Shown)> {
         use rayon::prelude::*;
-        let ideas = self.ranking.ideas(top);
-        let mut mixes: Vec<Shown> =
-            ideas.par_iter().filter_map(|idea| self.kitchen.ranked(idea.best, idea.alike)).collect();
+        let ideas = self.ranking.ideas(top.saturating_mul(SPARE_IDEAS));
+        let kept = |shown: &Shown| !shown.limits.iter().any(Check::broken);
+        let mut mixes: Vec<(&Ranked, f64, Shown)> = ideas
+            .par_iter()
+            .filter_map(|idea| Some((idea.best, idea.key, self.kitchen.ranked(idea.best, idea.alike)?)))
+            .filter(|(_, _, shown)| kept(shown))
+            .collect();
+        mixes.truncate(top);
         let mut before: Option<f64> = None;
-        for (shown, idea) in mixes.iter_mut().zip(&ideas) {
+        for (_, key, shown) in &mut mixes {
             shown.reasons = reasons(self.question.site, shown);
             shown
                 .reasons
-                .extend(before.map(|key| behind(Criterion::first_apart(self.question.order, key, idea.key))));
-            before = Some(idea.key);
+                .extend(before.map(|b| behind(Criterion::first_apart(self.question.order, b, *key))));
+            before = Some(*key);
         }
-        mixes
+        mixes.into_iter().map(|(ranked, _, shown)| (ranked, shown)).collect()
     }
 
     /// Where no mix keeps every target, the one that comes nearest. In the usual order the first mix keeps every
@@ -176,9 +187,8 @@ impl Answers<'_> {
     }
 
     /// Largest differences between what the search took a mix for and what it is, C and mg/L.
-    pub(super) fn apart(&self, mixes: &[Shown], trade: &[Trade]) -> (f64, Option<f64>) {
-        let ideas = self.ranking.ideas(mixes.len());
-        let shown = ideas.iter().zip(mixes).map(|(i, full)| (i.best, full.temperature_c, full.oxygen_mg_l));
+    pub(super) fn apart(&self, mixes: &[(&Ranked, Shown)], trade: &[Trade]) -> (f64, Option<f64>) {
+        let shown = mixes.iter().map(|(quick, full)| (*quick, full.temperature_c, full.oxygen_mg_l));
         let traded = trade.iter().map(|t| (&t.mix, t.temperature_c, t.oxygen_mg_l));
         let ends = [&self.ranking.attainable_c, &self.ranking.attainable_oxygen_mg_l];
         let ends = ends.into_iter().flatten().flatten().filter_map(|e| {
@@ -214,7 +224,12 @@ impl Answers<'_> {
             let asked = with(asked, between, [both * share, both * (1.0 - share)]);
             self.kitchen.water(&self.kitchen.resolved(&asked))
         };
-        let (roots, bracket_c) = roots(&water, both, preferred_c);
+        let (mut roots, bracket_c) = roots(&water, both, preferred_c);
+        for root in &mut roots {
+            let setting = self.kitchen.resolved(&with(asked, between, root.flows_m3s));
+            let broken = self.kitchen.now(&setting).map(|shown| shown.limits);
+            root.breaks = broken.into_iter().flatten().filter(Check::broken).collect();
+        }
         Some(PreferredSplit { gates: self.kitchen.gates(mix), between, preferred_c, roots, bracket_c })
     }
 

@@ -82,7 +82,7 @@ impl NothingFits {
     pub fn words(self) -> &'static str {
         match self {
             Self::NoneAllowed => "every mix examined breaks a limit",
-            Self::NoneReaches => "no mix examined reaches every target",
+            Self::NoneReaches => "no mix examined is known to reach every target",
         }
     }
 }
@@ -150,6 +150,7 @@ pub fn rank(
     let trade = answers.trade();
     let lost = answers.lost();
     let apart = answers.apart(&mixes, &trade);
+    let mixes: Vec<Shown> = mixes.into_iter().map(|(_, shown)| shown).collect();
     let answer = RankAnswer {
         attainable_c: coldest.and_then(|[a, b]| Some([a?.0, b?.0])),
         attainable_oxygen_mg_l: oxygen.and_then(|[a, b]| Some([a?.1?, b?.1?])),

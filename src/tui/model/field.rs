@@ -3,10 +3,11 @@
 use chrono::{DateTime, FixedOffset};
 use tui_input::Input;
 
-use crate::files::cast::parse_time;
+use crate::files::cast::{TIME_CURE, parse_time};
 use crate::site::{Outlet, Site};
+use crate::target::Target;
 use crate::tasks::Context;
-use crate::units::{Dimension, System, parse};
+use crate::units::{Dimension, System, parse, show};
 
 use super::board::Cell;
 
@@ -94,12 +95,18 @@ impl Field {
                 Cell::Flow(_) | Cell::Total(_) | Cell::Release => {
                     number(Dimension::Flow).and_then(|v| above_zero(v, "a flow"))
                 }
-                Cell::Pool => pool(context.map(Context::site), number(Dimension::Length)?),
+                Cell::Pool => pool(context.map(Context::site), number(Dimension::Length)?, system),
                 Cell::Date => match context {
-                    Some(context) => parse_time(text, context.site().offset).map(Value::Moment),
+                    Some(context) => parse_time(text, context.site().offset)
+                        .map(Value::Moment)
+                        .map_err(|why| format!("{why}; {TIME_CURE}")),
                     None => Err("there is no site".into()),
                 },
-                Cell::Low(_) | Cell::Preferred(_) | Cell::High(_) => bound(Dimension::Temperature),
+                Cell::Low(i) | Cell::Preferred(i) | Cell::High(i) => {
+                    let value = bound(Dimension::Temperature)?;
+                    let target = context.and_then(|c| c.site().targets.get(i)).cloned();
+                    target.map_or(Ok(()), |target| fits(target, cell, &value, system)).map(|()| value)
+                }
                 Cell::Oxygen(_) => match bound(Dimension::Concentration)? {
                     Value::Number(Some(v)) => above_zero(v, "oxygen"),
                     none => Ok(none),
@@ -128,11 +135,30 @@ fn opening(outlet: &Outlet, text: &str) -> Result<Value, String> {
     }
 }
 
-fn pool(site: Option<&Site>, pool_m: f64) -> Result<Value, String> {
+/// Whether a target can hold with another end or preferred temperature.
+fn fits(mut target: Target, cell: Cell, value: &Value, system: System) -> Result<(), String> {
+    let Value::Number(number) = value else { return Ok(()) };
+    match cell {
+        Cell::Low(_) => target.low_c = *number,
+        Cell::Preferred(_) => target.preferred_c = *number,
+        _ => target.high_c = *number,
+    }
+    match target.problems("").first() {
+        Some(problem) => Err(problem.advice(system)),
+        None => Ok(()),
+    }
+}
+
+fn pool(site: Option<&Site>, pool_m: f64, system: System) -> Result<Value, String> {
     match site {
         Some(site) if pool_m > site.pool.bed_m && pool_m <= site.pool.top_m() => {
             Ok(Value::Number(Some(pool_m)))
         }
-        _ => Err("outside the pool table".into()),
+        Some(site) => {
+            let [low, high] =
+                [site.pool.bed_m, site.pool.top_m()].map(|m| show(m, Dimension::Length, system, 1));
+            Err(format!("outside the pool table, {low} to {high}"))
+        }
+        None => Err("there is no site".into()),
     }
 }

@@ -16,7 +16,7 @@ pub use board::{Cell, Row, rows};
 pub use draft::{Draft, History};
 pub use field::{Field, Typed, Value};
 pub use session::{MixView, Page, PoolView, RankView, Ranked, Session, Shown, Whole};
-pub use tries::{Nudge, asked, set_flow, set_opening, set_release, set_total, taken, total_m3s};
+pub use tries::{Nudge, asked, opening_of, set_flow, set_opening, set_release, set_total, taken, total_m3s};
 
 use super::look::{Look, Theme};
 use super::work::Lane;

@@ -77,6 +77,12 @@ fn of_setting(site: &Site, setting: &Setting) -> Given {
     out.by_name(site)
 }
 
+/// Opening of an outlet in a setting, 0 to 1.
+pub fn opening_of(given: &Given, outlet: usize) -> f64 {
+    let by_flow = given.flows.iter().find(|g| g.outlet == outlet).map(|g| g.opening.unwrap_or(1.0));
+    by_flow.or_else(|| given.open.iter().find(|g| g.0 == outlet).map(|g| g.1)).unwrap_or(0.0)
+}
+
 /// Sets an opening, 0 to 1.
 pub fn set_opening(site: &Site, given: &mut Given, outlet: usize, opening: f64) {
     let shut = opening < SAME_OPENING;

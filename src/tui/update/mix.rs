@@ -9,8 +9,8 @@ use crate::units::{Dimension, System, figure};
 
 use super::super::keys::Action;
 use super::super::model::{
-    Cell, Draft, Field, Model, Nudge, Over, Session, Typed, Value, asked, set_flow, set_opening, set_release,
-    set_total, total_m3s,
+    Cell, Draft, Field, Model, Nudge, Over, Session, Typed, Value, asked, opening_of, set_flow, set_opening,
+    set_release, set_total, total_m3s,
 };
 use super::{Effect, ask_mixes, change, complain, mix_rows, recompute, say};
 
@@ -152,12 +152,6 @@ fn toggled(model: &mut Model) -> Vec<Effect> {
             set_opening(session.base.site(), tried, outlet, if open { 0.0 } else { 1.0 });
         }
     })
-}
-
-/// Opening of an outlet in a setting, 0 to 1.
-fn opening_of(given: &Given, outlet: usize) -> f64 {
-    let by_flow = given.flows.iter().find(|g| g.outlet == outlet).map(|g| g.opening.unwrap_or(1.0));
-    by_flow.or_else(|| given.open.iter().find(|g| g.0 == outlet).map(|g| g.1)).unwrap_or(0.0)
 }
 
 /// The value of a cell as it is now, in SI.

@@ -124,6 +124,7 @@ pub fn update(model: &mut Model, event: Event) -> Vec<Effect> {
 pub fn places(model: &Model) -> Vec<Place> {
     match &model.over {
         Some(Over::Field(_)) => return vec![Place::Field],
+        Some(Over::Help(_)) => return vec![Place::Help, Place::Everywhere],
         Some(_) => return vec![Place::List, Place::Everywhere],
         None => {}
     }

@@ -174,7 +174,10 @@ fn facts(
         let old = if to_the_hour { " old" } else { "" };
         format!(", {}{old}", days(d))
     });
+    let moved = context.profile.flags.iter().any(|f| f.kind == "pool-moved");
     let badge = match badge {
+        // the cast is of another pool: what is drawn is a guess, however fresh
+        _ if moved => ("[! GUESSED: POOL MOVED]".to_owned(), Role::Outside),
         Freshness::Fresh => ("[fresh]".to_owned(), Role::Inside),
         Freshness::Ageing => ("[~ ageing]".to_owned(), Role::Warn),
         other => (format!("[! {}]", other.word().to_uppercase()), Role::Outside),
@@ -221,6 +224,11 @@ fn tabs(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
     put_right(buf, area, area.width, 0, &cut(&words, room), model.look.style(role));
 }
 
+/// Limits that the setting tried breaks.
+fn broken_limits(session: &Session) -> usize {
+    session.tried().map_or(0, |answer| answer.mix.limits.iter().filter(|c| c.broken()).count())
+}
+
 fn is_long(model: &Model, under: &Under) -> bool {
     (model.clock - under.since).num_milliseconds() >= AT_ONCE_MS
 }
@@ -239,6 +247,11 @@ pub(super) fn status(model: &Model, session: &Session) -> (String, Role) {
     if let Some(under) = model.long.as_ref().filter(|under| is_long(model, under)) {
         let before = if session.ranked.is_some() { "; what is shown is from before" } else { "" };
         return (format!("ranking {:.0} %{before}, Esc stops", 100.0 * under.done), Role::Warn);
+    }
+    let broken = broken_limits(session);
+    if session.wrong.is_none() && session.screen == Screen::Mix && broken > 0 {
+        let plural = if broken == 1 { "" } else { "s" };
+        return (format!("! {broken} limit{plural} broken"), Role::Outside);
     }
     if session.wrong.is_some() {
         return ("! no answer to the last change; what is shown is from before".into(), Role::Outside);

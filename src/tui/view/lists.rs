@@ -12,19 +12,24 @@ use crate::units::System;
 use super::super::draw::boxed;
 use super::super::keys::{Place, TABLE};
 use super::super::look::{Role, Symbols, Theme};
-use super::super::model::{Choice, Field, Model, Over, Typed};
+use super::super::model::{Choice, Field, Model, Over, Screen, Stage, Typed};
 use super::write::{cut, put, row_style, wrapped};
+
+/// Lines for what is wrong with what is typed (choice: the longest cure takes three).
+const FIELD_WORDS: usize = 3;
 
 /// Lines the help can be scrolled to on a terminal so many rows high.
 pub(in crate::tui) fn help_lines(rows: u16) -> usize {
     // the caution and the box take five rows
-    (help().len() + 1).saturating_sub(usize::from(rows.saturating_sub(5)))
+    (help(Place::Everywhere).len() + 1).saturating_sub(usize::from(rows.saturating_sub(5)))
 }
 
 /// The help, made from the table of keys: heading or key and words.
-fn help() -> Vec<(String, String)> {
+fn help(here: Place) -> Vec<(String, String)> {
     let mut out = Vec::new();
-    for (place, heading) in Place::HEADINGS {
+    // what works here comes first
+    let (first, rest): (Vec<_>, Vec<_>) = Place::HEADINGS.into_iter().partition(|(place, _)| *place == here);
+    for (place, heading) in first.into_iter().chain(rest) {
         out.push((heading.to_owned(), String::new()));
         let told = TABLE.iter().filter(|b| b.place == place && !b.words.is_empty());
         out.extend(told.map(|b| (format!("  {}", b.shown), b.words.to_owned())));
@@ -35,6 +40,20 @@ fn help() -> Vec<(String, String)> {
     out.push(("caution".into(), String::new()));
     out.extend(wrapped(caution(), 64, 0).into_iter().map(|l| (String::new(), l)));
     out
+}
+
+/// The place of the screen below.
+fn here(model: &Model) -> Place {
+    match &model.stage {
+        Stage::Site(session) => match session.screen {
+            Screen::Pool => Place::Pool,
+            Screen::Mix => Place::Mix,
+            Screen::Rank => Place::Rank,
+        },
+        Stage::Sites { .. } => Place::Sites,
+        Stage::Broken { .. } => Place::Problems,
+        Stage::Opening { .. } => Place::Everywhere,
+    }
 }
 
 /// A box in the middle, so many lines and cells inside; the inside.
@@ -58,7 +77,7 @@ pub(super) fn over(model: &Model, area: Rect, buf: &mut Buffer) -> Option<Positi
     let area = Rect { height: area.height.saturating_sub(1), ..area };
     match model.over.as_ref()? {
         Over::Help(from) => {
-            let lines = help();
+            let lines = help(here(model));
             let inside = middle(model, area, "help: Up Down scroll, Esc closes", 84, lines.len(), buf);
             let last = lines.len().saturating_sub(usize::from(inside.height));
             for (row, (key, words)) in (0..inside.height).zip(lines.iter().skip((*from).min(last))) {
@@ -179,7 +198,7 @@ fn typed(model: &Model, field: &Field, area: Rect, buf: &mut Buffer) -> Position
         Typed::Release => "total release to rank at".into(),
         Typed::NewSite => "folder of the new site".into(),
     };
-    let inside = middle(model, area, &title, 60, 2, buf);
+    let inside = middle(model, area, &title, 60, 1 + FIELD_WORDS, buf);
     let look = model.look;
     let width = usize::from(inside.width.saturating_sub(1));
     let scroll = field.input.visual_scroll(width);
@@ -194,7 +213,9 @@ fn typed(model: &Model, field: &Field, area: Rect, buf: &mut Buffer) -> Position
         }
         (None, _) => ("Enter sets it, Esc leaves it as it was".to_owned(), Role::Quiet),
     };
-    put(buf, inside, 0, 1, &cut(&words, width), look.style(role));
+    for (row, line) in (1..inside.height).zip(wrapped(&words, width, 2)) {
+        put(buf, inside, 0, row, &cut(&line, width), look.style(role));
+    }
     let column = u16::try_from(field.input.visual_cursor().saturating_sub(scroll)).unwrap_or(0);
     Position::new(inside.x + column.min(inside.width.saturating_sub(1)), inside.y)
 }
@@ -229,8 +250,8 @@ pub(super) fn problems(
 ) {
     let look = model.look;
     let count = problems.iter().filter(|p| p.weight == Weight::Refused).count();
-    let again = if kept { "your tries are kept" } else { "it opens by itself" };
-    let words = format!("{count} to be mended; when the files are, {again}:");
+    let again = if kept { ", with your tries" } else { "" };
+    let words = format!("{count} to be mended; then it opens by itself{again}:");
     put(buf, area, 0, 0, &words, look.style(Role::Plain));
     let width = usize::from(area.width).saturating_sub(4);
     let texts: Vec<Vec<String>> = problems.iter().map(|p| wrapped(&p.text(system), width, 2)).collect();

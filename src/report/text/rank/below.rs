@@ -3,6 +3,7 @@
 use std::fmt::Write as _;
 
 use crate::mix::Gate;
+use crate::mix::limits::Check;
 use crate::problem::harmless;
 use crate::tasks::Context;
 use crate::tasks::rank::{
@@ -134,7 +135,15 @@ fn split(context: &Context, answer: &RankAnswer, split: &PreferredSplit, system:
     };
     let one = |r: &Root| {
         let air = oxygen(r.oxygen_mg_l);
-        format!("{a} {}, {b} {} (oxygen {air})", flow(r.flows_m3s[0], system), flow(r.flows_m3s[1], system))
+        let broken = |c: &Check| match c.of.name(site) {
+            Some(name) => format!("{} of {}", c.rule.name(), harmless(name)),
+            None => c.rule.name().to_owned(),
+        };
+        let breaks: Vec<String> = r.breaks.iter().map(broken).collect();
+        let breaks =
+            if breaks.is_empty() { String::new() } else { format!("; BREAKS {}", breaks.join(", ")) };
+        let [one, other] = r.flows_m3s.map(|f| flow(f, system));
+        format!("{a} {one}, {b} {other} (oxygen {air}{breaks})")
     };
     let roots: Vec<String> = split.roots.iter().map(one).collect();
     if roots.is_empty() {

@@ -146,6 +146,20 @@ impl Frame {
             (picture.high_c, "to ", bound),
             (picture.preferred_c, "P ", preferred),
         ];
+        // a range that lies all on one side is named whole: one of its ends alone would read as reaching here
+        let aside = match (picture.low_c, picture.high_c) {
+            (Some(low), Some(high)) if picture.shown(high) < self.x.low() => Some((low, high, true)),
+            (Some(low), Some(high)) if picture.shown(low) > self.x.high() => Some((low, high, false)),
+            _ => None,
+        };
+        if let Some((low, high, left)) = aside {
+            let [low, high] = [low, high].map(|c| picture.temperature(c));
+            let text =
+                if left { format!("<range {low} to {high}") } else { format!("range {low} to {high}>") };
+            let start = if left { SIDE } else { (SIDE + self.cols).saturating_sub(text.len()).max(SIDE) };
+            pen.put(start, 1, &text, Role::Range);
+            return;
+        }
         for (value, word, line) in all {
             let Some(c) = value else { continue };
             let number = picture.temperature(c);

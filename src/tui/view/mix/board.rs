@@ -82,8 +82,15 @@ fn places(row: Row, c: &Columns, width: u16) -> Vec<(u16, u16)> {
         Row::Outlet(_) => vec![(c.opening, c.flow - 1), (c.flow, c.room - 1)],
         Row::Well(_) | Row::Release | Row::Pool | Row::Date => vec![(c.flow, c.room - 1)],
         Row::Target(_) => {
-            let part = (width.saturating_sub(c.now)) / 4;
-            (0..4).map(|i| (c.now + i * part, c.now + (i + 1) * part - 1)).collect()
+            // as wide as `low 48.0`, `pref 52.0`, `high 56.0` and `O2 7.0` with a blank each, and more where there is
+            let more = width.saturating_sub(c.now + 37) / 4;
+            let mut from = c.now;
+            let next = |wide: u16| {
+                let place = (from, from + wide + more - 1);
+                from += wide + more;
+                place
+            };
+            [9, 10, 10, 8].map(next).to_vec()
         }
     }
 }
@@ -121,6 +128,11 @@ struct Board<'a> {
 impl Board<'_> {
     fn site(&self) -> &Site {
         self.session.context().site()
+    }
+
+    /// Cells of the column of limits.
+    fn room_cells(&self, area: Rect) -> usize {
+        usize::from(area.width.saturating_sub(self.c.room + 1))
     }
 
     fn row(&self, row: Row, area: Rect, line: u16, buf: &mut Buffer) {
@@ -223,7 +235,7 @@ impl Board<'_> {
         if was.is_some_and(|was| !same(gate, was)) {
             put(buf, area, spans[1].1, line, "*", look.style(Role::Tried));
         }
-        let (words, role) = room(answer, Of::Outlet(i), gate.is_some());
+        let (words, role) = room(answer, Of::Outlet(i), gate.is_some(), self.room_cells(area));
         put(
             buf,
             area,
@@ -250,7 +262,8 @@ impl Board<'_> {
                 let idle = asked(self.site(), &given).totals.iter().all(|t| t.0 != i)
                     && given.flows.iter().all(|f| self.site().outlets[f.outlet].well != Some(i));
                 let words = match total {
-                    Some(total) if idle && total > 0.0 => format!("({})", self.flow(total)),
+                    // its total waits for a gate; nothing passes
+                    Some(_) if idle => "shut".into(),
                     Some(total) => self.flow(total),
                     None => "-".into(),
                 };
@@ -272,7 +285,7 @@ impl Board<'_> {
             }
             Row::Pool => {
                 let tried = draft.changed.pool_m.unwrap_or(session.own_pool_m());
-                (Cell::Pool, Some(length(session.own_pool_m())), length(tried), "pool", None)
+                (Cell::Pool, Some(length(session.base.profile.pool_m)), length(tried), "pool", None)
             }
             _ => {
                 let on = draft.changed.on.unwrap_or(session.base.on);
@@ -288,7 +301,7 @@ impl Board<'_> {
         let (words, role) = match (unit, of) {
             ("pool", _) => (system.unit(Dimension::Length).symbol().to_owned(), Role::Quiet),
             ("date", _) => (String::new(), Role::Quiet),
-            (_, Some(of)) => room(answer, of, true),
+            (_, Some(of)) => room(answer, of, true, self.room_cells(area)),
             _ => (String::new(), Role::Quiet),
         };
         put(
@@ -329,11 +342,15 @@ fn target_words(i: usize, target: &Target, system: System) -> [(Cell, String); 4
 }
 
 /// Limits of something: how many are kept, or the first that is not.
-fn room(answer: Option<&MixAnswer>, of: Of, open: bool) -> (String, Role) {
+fn room(answer: Option<&MixAnswer>, of: Of, open: bool, cells: usize) -> (String, Role) {
     let Some(answer) = answer.filter(|_| open) else { return (String::new(), Role::Quiet) };
     let mine: Vec<&Check> = answer.mix.limits.iter().filter(|c| c.of == of).collect();
     match mine.iter().find(|c| c.broken()) {
-        Some(broken) => (format!("! {}", broken.rule.name()), Role::Outside),
+        Some(broken) if broken.rule.name().len() + 2 <= cells => {
+            (format!("! {}", broken.rule.name()), Role::Outside)
+        }
+        // the whole name is said below
+        Some(_) => ("! broken".into(), Role::Outside),
         None if mine.is_empty() => ("none given".into(), Role::Quiet),
         None => (format!("{} kept", mine.len()), Role::Inside),
     }

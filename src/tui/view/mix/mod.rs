@@ -15,12 +15,12 @@ mod said;
 use ratatui::buffer::Buffer;
 use ratatui::layout::{Position, Rect};
 
-use crate::mix::Setting;
+use crate::mix::{Drawn, Setting};
 use crate::tasks::MixAnswer;
 use crate::tui::draw::column::{Picture, column, gate_at};
 use crate::tui::draw::gauge::{Attainable, Gauge, Release, gauges, gauges_rows};
 use crate::tui::look::Role;
-use crate::tui::model::{Cell, Model, Row, Session, Shown};
+use crate::tui::model::{Cell, Model, Row, Session, Shown, opening_of};
 use crate::units::{Dimension, show};
 
 use super::water::{self, Stands};
@@ -151,9 +151,12 @@ fn picture(model: &Model, session: &Session, shown: &Shown) -> Picture {
         _ => None,
     };
     let stands = |outlet: usize| {
-        let gate = setting(session).and_then(|s| s.gates.iter().find(|g| g.outlet == outlet));
+        let gate = setting(session).and_then(|s| s.gates.iter().find(|g| g.outlet == outlet).copied());
+        // without an answer a gate stands as it is given, and nothing is known to pass
+        let given = session.draft().tried().filter(|_| setting(session).is_none());
+        let opening = given.map_or(0.0, |given| opening_of(given, outlet));
         Stands {
-            opening: gate.map_or(0.0, |g| g.opening),
+            opening: gate.map_or(opening, |g| g.opening),
             flow_m3s: gate.map_or(0.0, |g| g.flow_m3s),
             out: water::is_out(site, outlet, date),
         }
@@ -161,7 +164,9 @@ fn picture(model: &Model, session: &Session, shown: &Shown) -> Picture {
     let gates = (0..site.outlets.len())
         .map(|i| water::gate(site, i, stands(i), profile.pool_m, chosen == Some(i), model.system()))
         .collect();
-    let levels = session.tried().map_or(&[][..], |a| &a.mix.levels);
+    // where not all zones fit the largest flows keep theirs
+    let mut levels: Vec<&Drawn> = session.tried().map_or_else(Vec::new, |a| a.mix.levels.iter().collect());
+    levels.sort_by(|a, b| b.level.sink.flow_m3s.total_cmp(&a.level.sink.flow_m3s));
     Picture {
         gates,
         zones: levels.iter().filter_map(|d| water::zone(site, profile, d)).collect(),

@@ -70,7 +70,13 @@ fn lines(model: &Model, session: &Session, width: usize) -> Vec<(String, Role)> 
     if let Some((_, was)) = &answer.now {
         say(format!("against now: {}", text::difference(was, &answer.mix, system)), Role::Strong);
     } else {
-        say("the setting now".into(), Role::Strong);
+        let changed = &session.draft().changed;
+        let tried = if changed.pool_m.is_some() || changed.on.is_some() || changed.cast.is_some() {
+            "the setting now, with the pool, date or cast tried"
+        } else {
+            "the setting now"
+        };
+        say(tried.into(), Role::Strong);
     }
     // limits that are broken and what to beware of come before anything that can be scrolled away
     for flag in flags_of(&answer.mix.warnings).into_iter().filter(|p| p.weight != Weight::Note) {
@@ -80,9 +86,18 @@ fn lines(model: &Model, session: &Session, width: usize) -> Vec<(String, Role)> 
     if let Some(change) = &answer.change {
         let hours = format!("{:.1} crew hours", change.moves.crew_hours);
         say(format!("{}; {hours}", text::moves(context, change, system)), Role::Plain);
+        if let Some((now, _)) = &answer.now {
+            let wells = text::wells_changed(site, now, &answer.setting, system);
+            if !wells.is_empty() {
+                say(format!("the wells carry otherwise: {wells}"), Role::Plain);
+            }
+        }
     }
     if answer.day.is_some() {
         say("this is the day's longest block; targets are judged over the day".into(), Role::Warn);
+    }
+    if answer.day.is_none() && !site.blocks.is_empty() {
+        say("held all day long here; the site file has blocks of the day".into(), Role::Warn);
     }
     if let Some(words) = ranked_at(session, answer, system) {
         say(words, Role::Plain);
