@@ -139,6 +139,12 @@ impl Outlet {
         matches!(self.kind, Kind::Crest { .. })
     }
 
+    /// Whether an opening says more of it than its flow: what has no positions and stands on no well is set by its flow
+    /// alone.
+    pub fn has_opening(&self) -> bool {
+        self.well.is_some() || !self.positions.is_empty()
+    }
+
     /// Full height of the opening, m; 0 for a crest.
     pub fn height_m(&self) -> f64 {
         match self.kind {

@@ -57,7 +57,7 @@ impl Kept {
     }
 }
 
-fn name<T: PartialEq>(names: &[(&str, T)], value: T) -> Option<String> {
+fn name<T: PartialEq + Copy>(names: &[(&str, T)], value: T) -> Option<String> {
     names.iter().find(|n| n.1 == value).map(|n| n.0.to_owned())
 }
 

@@ -137,6 +137,8 @@ impl Taken {
         enter(self.mouse)?;
         // the screen just entered is blank; to clear it would ask where the cursor is, which not every terminal answers
         self.terminal = blank(&self.held)?;
+        // the one before shows the cursor as it goes
+        self.held.0.take();
         Ok(())
     }
 

@@ -1,6 +1,6 @@
 //! The pool against the cast before: a box of water, so that every figure follows by hand.
 
-use gatemix::tasks::{self, Asked, ColdWater};
+use gatemix::tasks::{self, Asked, Changed, ColdWater};
 use serde_json::Value;
 
 use crate::{Folder, run, with};
@@ -169,4 +169,20 @@ fn scenario_cold_water_of_any_threshold_is_counted_as_that_of_the_site() {
     at(15.0, 40.0);
     at(19.0, 44.0);
     at(25.0, 55.0);
+}
+
+#[test]
+fn scenario_what_is_tried_on_an_opened_site_reads_no_cast_again() {
+    let folder = folder(&[("a.csv", MIXED), ("b.csv", LAYERED)]);
+    let asked = Asked { site: Some(folder.named().into()), ..Asked::default() };
+    let context = tasks::open(&asked, chrono::Utc::now()).unwrap();
+    let read = tasks::pool(&context);
+    assert!(read.since.is_some());
+    std::fs::remove_dir_all(folder.site_file().with_file_name("profiles")).unwrap();
+    let lower = Changed { pool_m: Some(54.0), ..Changed::default() };
+    let tried = tasks::pool(&context.changed(&lower).unwrap());
+    near(&tried.since.unwrap().pool_m.into(), 4.0);
+    assert_eq!(tried.fingerprint, read.fingerprint);
+    let gone = Changed { cast: Some("a.csv".into()), ..Changed::default() };
+    assert!(context.changed(&gone).is_err(), "another cast is read when it is taken");
 }

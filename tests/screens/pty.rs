@@ -171,10 +171,9 @@ fn scenario_ctrl_z_gives_the_terminal_to_the_shell_and_coming_back_finds_everyth
     terminal.wait_for("[1 pool]");
     terminal.send("2");
     terminal.wait_for("the setting now");
-    terminal.send(&DOWN.repeat(5));
-    terminal.send(RIGHT);
+    terminal.send(&DOWN.repeat(2));
     terminal.send("\r");
-    terminal.wait_for("flow of N3");
+    terminal.wait_for("flow of N4, cfs");
     terminal.send("200\r");
     terminal.wait_for("colder");
     let told = line_with(terminal, "against now");

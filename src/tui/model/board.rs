@@ -52,12 +52,7 @@ impl Row {
         match self {
             Self::Outlet(i) => {
                 let outlet = &site.outlets[i];
-                // what has no positions and stands on no well is set by its flow alone
-                if outlet.well.is_some() || !outlet.positions.is_empty() {
-                    vec![Cell::Opening(i), Cell::Flow(i)]
-                } else {
-                    vec![Cell::Flow(i)]
-                }
+                if outlet.has_opening() { vec![Cell::Opening(i), Cell::Flow(i)] } else { vec![Cell::Flow(i)] }
             }
             Self::Well(i) => vec![Cell::Total(i)],
             Self::Release => vec![Cell::Release],

@@ -6,7 +6,7 @@
 
 use crate::intake;
 use crate::mix::Setting;
-use crate::site::{Outlet, SAME_OPENING, Site};
+use crate::site::{SAME_OPENING, Site};
 use crate::tasks::rank::Shown as Mix;
 use crate::tasks::{ByFlow, Given};
 
@@ -67,7 +67,7 @@ fn of_setting(site: &Site, setting: &Setting) -> Given {
         if shared {
             out.open.push((gate.outlet, gate.opening));
         } else if !intake::spills_by_itself(outlet) {
-            let opening = Some(gate.opening).filter(|_| has_openings(outlet));
+            let opening = Some(gate.opening).filter(|_| outlet.has_opening());
             out.flows.push(ByFlow { outlet: gate.outlet, flow_m3s: gate.flow_m3s, opening });
         }
     }
@@ -75,11 +75,6 @@ fn of_setting(site: &Site, setting: &Setting) -> Given {
         out.totals.push((well.well, well.flow_m3s));
     }
     out.by_name(site)
-}
-
-/// Whether an opening says more of an outlet than its flow.
-fn has_openings(outlet: &Outlet) -> bool {
-    outlet.well.is_some() || !outlet.positions.is_empty()
 }
 
 /// Opening of an outlet in a setting, 0 to 1.
@@ -115,7 +110,7 @@ pub fn set_flow(site: &Site, given: &mut Given, outlet: usize, flow_m3s: f64, sp
     }
     let was_open = given.open.iter().find(|g| g.0 == outlet).map(|g| g.1);
     given.open.retain(|g| g.0 != outlet);
-    let opening = was_open.or_else(|| has_openings(&site.outlets[outlet]).then_some(1.0));
+    let opening = was_open.or_else(|| site.outlets[outlet].has_opening().then_some(1.0));
     match given.flows.iter_mut().find(|g| g.outlet == outlet) {
         _ if flow_m3s <= 0.0 => given.flows.retain(|g| g.outlet != outlet),
         Some(flow) => flow.flow_m3s = flow_m3s,

@@ -141,10 +141,7 @@ fn toggled(model: &mut Model) -> Vec<Effect> {
         complain(model, "Space opens or shuts a gate; choose one");
         return Vec::new();
     };
-    let has_opening = model.session().is_some_and(|s| {
-        let o = &s.base.site().outlets[outlet];
-        o.well.is_some() || !o.positions.is_empty()
-    });
+    let has_opening = model.session().is_some_and(|s| s.base.site().outlets[outlet].has_opening());
     if !has_opening {
         // shut is no flow; how much it opens to only the user knows
         return put(model, Cell::Flow(outlet), &Value::Number(Some(0.0)));

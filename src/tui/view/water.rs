@@ -1,5 +1,7 @@
 //! The picture of the pool, filled from a site and its cast.
 
+use chrono::NaiveDate;
+
 use crate::intake;
 use crate::mix::Drawn;
 use crate::profile::{Layering, Profile};
@@ -61,6 +63,11 @@ pub(super) struct Stands {
     pub(super) flow_m3s: f64,
     /// Whether it is out of use.
     pub(super) out: bool,
+}
+
+/// Whether an outlet is out of use on a date.
+pub(super) fn is_out(site: &Site, outlet: usize, date: NaiveDate) -> bool {
+    site.limits.outages.iter().any(|o| o.outlet == outlet && o.covers(date))
 }
 
 /// The mark of an outlet with the water over it as its note.

@@ -10,10 +10,10 @@ use crate::report::fitted;
 use crate::site::{Outlet, Site};
 use crate::target::Target;
 use crate::tasks::{MixAnswer, now_setting};
+use crate::tui::look::Role;
+use crate::tui::model::{Cell, Model, Row, Session, asked, rows, total_m3s};
 use crate::units::{Dimension, System, figure};
 
-use super::super::super::look::Role;
-use super::super::super::model::{Cell, Model, Row, Session, asked, rows, total_m3s};
 use super::super::lists::first_line;
 use super::super::write::{cut, put, put_right};
 use super::digits;
@@ -184,11 +184,7 @@ impl Board<'_> {
         match gate {
             None => ("shut".into(), "-".into()),
             Some(g) => {
-                let opening = if o.well.is_some() || !o.positions.is_empty() {
-                    o.opening_name(g.opening)
-                } else {
-                    "open".into()
-                };
+                let opening = if o.has_opening() { o.opening_name(g.opening) } else { "open".into() };
                 (opening, self.flow(g.flow_m3s))
             }
         }
@@ -222,9 +218,8 @@ impl Board<'_> {
             _ => shared.filter(|_| crate::intake::spills_by_itself(o)),
         };
         let (opening, flow) = self.stand(o, gate.as_ref());
-        let has_opening = o.well.is_some() || !o.positions.is_empty();
         let spans = places(Row::Outlet(i), c, area.width);
-        if has_opening {
+        if o.has_opening() {
             self.value(Cell::Opening(i), &opening, spans[0], line, area, buf);
         } else if gate.is_none() {
             put_right(buf, area, spans[0].1, line, "shut", look.style(Role::Tried));

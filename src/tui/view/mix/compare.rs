@@ -7,11 +7,11 @@ use crate::problem::harmless;
 use crate::report::text;
 use crate::target::Standing;
 use crate::tasks::MixAnswer;
+use crate::tui::draw::boxed;
+use crate::tui::look::Role;
+use crate::tui::model::{Model, Session};
 use crate::units::{Dimension, System, figure, show};
 
-use super::super::super::draw::boxed;
-use super::super::super::look::Role;
-use super::super::super::model::{Model, Session};
 use super::super::failure_words;
 use super::super::write::{cut, put, wrapped};
 use super::digits;

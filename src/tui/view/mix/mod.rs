@@ -17,12 +17,12 @@ use ratatui::layout::{Position, Rect};
 
 use crate::mix::{Drawn, Setting};
 use crate::tasks::MixAnswer;
+use crate::tui::draw::column::{Picture, column, gate_at};
+use crate::tui::draw::gauge::{Attainable, Gauge, Release, gauges, gauges_rows};
+use crate::tui::look::Role;
+use crate::tui::model::{Cell, Model, Row, Session, Shown, opening_of};
 use crate::units::{Dimension, show};
 
-use super::super::draw::column::{Picture, column, gate_at};
-use super::super::draw::gauge::{Attainable, Gauge, Release, gauges, gauges_rows};
-use super::super::look::Role;
-use super::super::model::{Cell, Model, Row, Session, Shown, opening_of};
 use super::water::{self, Stands};
 use super::write::put;
 use super::{Hit, failure_words};
@@ -158,7 +158,7 @@ fn picture(model: &Model, session: &Session, shown: &Shown) -> Picture {
         Stands {
             opening: gate.map_or(opening, |g| g.opening),
             flow_m3s: gate.map_or(0.0, |g| g.flow_m3s),
-            out: site.limits.outages.iter().any(|o| o.outlet == outlet && o.covers(date)),
+            out: water::is_out(site, outlet, date),
         }
     };
     let gates = (0..site.outlets.len())

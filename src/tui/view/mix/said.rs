@@ -8,10 +8,10 @@ use crate::mix::limits::{Check, Of};
 use crate::problem::{Weight, harmless};
 use crate::report::{flags_of, text};
 use crate::tasks::MixAnswer;
+use crate::tui::look::Role;
+use crate::tui::model::{Cell, Model, Session};
 use crate::units::{Dimension, System, in_system, show};
 
-use super::super::super::look::Role;
-use super::super::super::model::{Cell, Model, Session};
 use super::super::failure_words;
 use super::super::write::{put, put_right, wrapped};
 

@@ -3,9 +3,9 @@
 use crate::problem::{Problem, Weight};
 use crate::profile::Profile;
 use crate::report::flags_of;
+use crate::tui::look::Role;
 use crate::units::{Dimension, System, show};
 
-use super::super::super::look::Role;
 use super::{Line, filled};
 
 /// Elevation of a line of the file, m, where a sample stands on it.

@@ -18,10 +18,10 @@ use unicode_width::UnicodeWidthChar;
 
 use crate::problem::harmless;
 use crate::tasks::Cast;
+use crate::tui::draw::column::{Picture, column, elevation_at};
+use crate::tui::look::Role;
+use crate::tui::model::{Model, Session};
 
-use super::super::draw::column::{Picture, column, elevation_at};
-use super::super::look::Role;
-use super::super::model::{Model, Session};
 use super::write::{put, put_right, wrapped};
 use super::{Hit, failure_words, frame};
 

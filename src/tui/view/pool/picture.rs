@@ -1,14 +1,11 @@
 //! The picture of the cast shown, with the casts laid over it.
 
-use chrono::NaiveDate;
-
-use crate::site::Site;
 use crate::tasks::{Cast, OutletState};
+use crate::tui::draw::column::{Fixed, GateMark, GateState, Picture};
+use crate::tui::look::Role;
+use crate::tui::model::{Model, Session};
 use crate::units::{Dimension, System, show};
 
-use super::super::super::draw::column::{Fixed, GateMark, GateState, Picture};
-use super::super::super::look::Role;
-use super::super::super::model::{Model, Session};
 use super::super::water;
 use super::{Line, filled, flags, named};
 
@@ -25,7 +22,7 @@ pub(super) fn picture(model: &Model, session: &Session) -> Option<Picture> {
         let part = o.open_part(1.0);
         let gate_state = match (state.wet, state.kept) {
             (false, _) => GateState::Dry,
-            _ if is_out(site, state.outlet, date) => GateState::Out,
+            _ if water::is_out(site, state.outlet, date) => GateState::Out,
             (true, Some(false)) => GateState::Short,
             (true, _) => GateState::Wet,
         };
@@ -54,11 +51,6 @@ pub(super) fn picture(model: &Model, session: &Session) -> Option<Picture> {
         fixed: Fixed { temperature_c: season_c(session, system), ..Fixed::default() },
         ..pool
     })
-}
-
-/// Whether an outlet is out of use on a date.
-pub(super) fn is_out(site: &Site, outlet: usize, date: NaiveDate) -> bool {
-    site.limits.outages.iter().any(|o| o.outlet == outlet && o.covers(date))
 }
 
 /// Casts laid over the one shown, in the order they were.

@@ -5,11 +5,11 @@ use unicode_width::UnicodeWidthStr;
 use crate::problem::harmless;
 use crate::report::{fitted, text};
 use crate::tasks::{ColdWater, Context, OutletState};
+use crate::tui::draw::column::GateState;
+use crate::tui::look::Role;
 use crate::units::{Dimension, System, figure};
 
-use super::super::super::draw::column::GateState;
-use super::super::super::look::Role;
-use super::picture::is_out;
+use super::super::water;
 use super::{Line, filled};
 
 /// Cells of the column of names from which it is one.
@@ -38,7 +38,7 @@ fn row(context: &Context, s: &OutletState, system: System) -> Row {
         (true, Some(true)) => (format!("keeps {asked}"), Role::Plain),
         (true, None) => ("not checked".to_owned(), Role::Plain),
     };
-    let out = is_out(context.site(), s.outlet, context.on.date_naive());
+    let out = water::is_out(context.site(), s.outlet, context.on.date_naive());
     let name = format!(
         "{}{}",
         if out { GateState::Out.sign().to_string() } else { String::new() },

@@ -3,10 +3,10 @@
 use crate::problem::{Problem, any_refused};
 use crate::report::text;
 use crate::tasks::{Cast, Context, Freshness, cold_water};
+use crate::tui::look::Role;
+use crate::tui::model::{Model, Session};
 use crate::units::{Dimension, System};
 
-use super::super::super::look::Role;
-use super::super::super::model::{Model, Session};
 use super::super::failure_words;
 use super::{Line, filled, flags, named, tables};
 

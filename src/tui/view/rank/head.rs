@@ -5,10 +5,10 @@ use ratatui::layout::Rect;
 use crate::problem::harmless;
 use crate::report::text::{openings, range, rank};
 use crate::tasks::rank::Shown;
+use crate::tui::look::Role;
+use crate::tui::model::{Model, Session};
 use crate::units::{Dimension, show};
 
-use super::super::super::look::Role;
-use super::super::super::model::{Model, Session};
 use super::super::failure_words;
 use super::{Lines, Screen, say};
 

@@ -4,8 +4,8 @@ use ratatui::buffer::Buffer;
 use ratatui::layout::{Position, Rect};
 
 use crate::report::text::rank;
+use crate::tui::look::Role;
 
-use super::super::super::look::Role;
 use super::super::lists::first_line;
 use super::super::write::{cut, put, row_style};
 use super::Screen;

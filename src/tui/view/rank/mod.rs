@@ -17,9 +17,10 @@ mod said;
 use ratatui::buffer::Buffer;
 use ratatui::layout::{Position, Rect};
 
-use super::super::draw::trade::{TradePicture, mix_at, trade};
-use super::super::look::Role;
-use super::super::model::{Model, Page, Ranked, Session};
+use crate::tui::draw::trade::{TradePicture, mix_at, trade};
+use crate::tui::look::Role;
+use crate::tui::model::{Model, Page, Ranked, Session};
+
 use super::Hit;
 use super::write::{cut, put, put_right, wrapped};
 

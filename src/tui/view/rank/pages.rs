@@ -3,9 +3,9 @@
 use crate::mix::limits::Group;
 use crate::problem::{Weight, harmless};
 use crate::report::text::rank;
+use crate::tui::look::Role;
 use crate::units::in_system;
 
-use super::super::super::look::Role;
 use super::{Lines, Screen, labelled, say};
 
 /// Columns of the label of an answer.

@@ -3,9 +3,9 @@
 use crate::problem::harmless;
 use crate::report::text::{apart, rank, release_words};
 use crate::tasks::rank::Shown;
+use crate::tui::look::Role;
 use crate::units::in_system;
 
-use super::super::super::look::Role;
 use super::{Lines, Screen, say};
 
 /// What is said of the mix chosen: what comes out, what to set, what it changes, why it stands there, what to beware of.
