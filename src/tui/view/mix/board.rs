@@ -115,7 +115,7 @@ pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffe
     if hidden > 0 {
         put_right(buf, area, area.width, 0, &format!("{hidden} more rows"), quiet);
     } else {
-        put(buf, area, c.room, 0, "limits", quiet);
+        put(buf, area, board.c.room, 0, "limits", quiet);
     }
 }
 
