@@ -22,8 +22,9 @@ fn open(site: &str, profile: Option<&str>, on: Option<&str>) -> Result<Context, 
     tasks::open(&asked, clock())
 }
 
-/// Everything in a context, also what is private.
+/// Everything in a context, also what is private; its casts are read in any case, which one that needs none puts off.
 fn whole(context: &Context) -> String {
+    assert!(!context.folder.casts().is_empty());
     format!("{context:?}")
 }
 

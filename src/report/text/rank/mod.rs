@@ -120,7 +120,7 @@ pub fn nothing_fits(context: &Context, answer: &RankAnswer, system: System) -> O
     let why = answer.nothing_fits()?;
     let words = match (why, &answer.nearest) {
         (NothingFits::NoneReaches, Some(nearest)) => {
-            format!("No mix examined reaches every target. Nearest: {}", nearly(context, nearest, system))
+            format!("No mix examined is known to reach every target. Nearest: {}", nearly(context, nearest, system))
         }
         _ if answer.ranking.examined == 0 => "There is no mix: every outlet is left out.".into(),
         _ => "No mix is allowed: every one examined breaks a limit. What rejects them, with its smallest miss, stands below."
