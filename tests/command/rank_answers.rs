@@ -221,3 +221,43 @@ fn scenario_the_range_says_where_some_oxygen_is_unknown() {
     let words = range(&shallow);
     assert!(words.contains("mg/L oxygen, unknown for some"), "{words}");
 }
+
+/// The search knows the blocks of a day to some thousandths of a degree; what only the full computation shows to break
+/// a limit is not listed, and a split that breaks one says so.
+#[test]
+fn law_what_is_listed_breaks_no_limit_and_a_split_that_does_says_so() {
+    let home = tempfile::tempdir().unwrap();
+    let site = home.path().join("new");
+    let named = site.to_str().unwrap();
+    assert_eq!(run(&["new", named]).code, Some(0));
+    let file = site.join("site.yaml");
+    let steady = std::fs::read_to_string(&file).unwrap();
+    let limit = "max_temperature_change_per_day: 2";
+    assert!(steady.contains(limit), "{steady}");
+    let blocks = "blocks: [ { name: peak, hours: 6, flow: 32 }, { name: off-peak, hours: 18, flow: 16 } ]\n";
+    std::fs::write(&file, format!("{steady}\n{blocks}")).unwrap();
+    let day = run(&["rank", named, "--json", "--top", "40"]).json();
+    let mixes = day["mixes"].as_array().unwrap();
+    assert!(mixes.len() > 4);
+    for mix in mixes {
+        let kinds = mix["warnings"].as_array().unwrap().iter().map(|w| w["kind"].as_str().unwrap());
+        assert!(kinds.into_iter().all(|kind| kind != "limit"), "{mix}");
+    }
+    // the demonstration may change by 4 F a day, which its splits for 50 F do not keep
+    let demo = home.path().join("demo");
+    assert_eq!(run(&["demo", demo.to_str().unwrap()]).code, Some(0));
+    let ashlar = demo.join("ashlar");
+    let file = ashlar.join("site.yaml");
+    let text = std::fs::read_to_string(&file).unwrap();
+    std::fs::write(&file, with(&text, "preferred: 52", "preferred: 50")).unwrap();
+    let named = ashlar.to_str().unwrap();
+    let tight = run(&["rank", named, "--json"]).json();
+    let roots = tight["preferred_split"]["roots"].as_array().unwrap();
+    assert!(!roots.is_empty(), "{}", tight["preferred_split"]);
+    let breaks = |root: &Value| {
+        root["breaks"].as_array().unwrap().iter().any(|b| b == "max_temperature_change_per_day")
+    };
+    assert!(roots.iter().all(breaks), "{roots:?}");
+    let text = run(&["rank", named]).out.split_whitespace().collect::<Vec<_>>().join(" ");
+    assert!(text.contains("BREAKS max_temperature_change_per_day"), "{text}");
+}

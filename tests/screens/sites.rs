@@ -2,7 +2,7 @@
 
 use std::fs;
 use std::path::{Path, PathBuf};
-use std::sync::OnceLock;
+use std::sync::{Mutex, OnceLock, PoisonError};
 
 /// The working folder of every test here: sites are named from it.
 pub(crate) fn ground() -> &'static Path {
@@ -59,11 +59,16 @@ depth_m,temperature_C,oxygen_mg_l
 
 /// Writes a site where it is not there yet as it is wanted, and gives its name.
 pub(crate) fn site(name: &str, site: &str, casts: &[(&str, &str)]) -> String {
+    // what is there already is not touched: another test may be reading it
+    static ONE_BY_ONE: Mutex<()> = Mutex::new(());
+    let _one = ONE_BY_ONE.lock().unwrap_or_else(PoisonError::into_inner);
     let folder = ground().join(name);
     fs::create_dir_all(folder.join("profiles")).unwrap();
     let cast = |(file, text): &(&str, &str)| (folder.join("profiles").join(file), (*text).to_owned());
     for (path, text) in casts.iter().map(cast).chain([(folder.join("site.yaml"), site.to_owned())]) {
-        fs::write(path, text).unwrap();
+        if fs::read_to_string(&path).ok().as_ref() != Some(&text) {
+            fs::write(path, text).unwrap();
+        }
     }
     name.to_owned()
 }
