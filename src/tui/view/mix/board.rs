@@ -299,6 +299,9 @@ impl Board<'_> {
         // dates are as wide as opening and flow together
         let from = if matches!(row, Row::Date | Row::Pool) { c.opening } else { c.flow };
         self.value(cell, &tried, (from, c.room - 1), line, area, buf);
+        if now != tried {
+            put(buf, area, c.room - 1, line, "*", look.style(Role::Tried));
+        }
         let (words, role) = match (unit, of) {
             ("pool", _) => (system.unit(Dimension::Length).symbol().to_owned(), Role::Quiet),
             ("date", _) => (String::new(), Role::Quiet),

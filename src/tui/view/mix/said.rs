@@ -84,14 +84,16 @@ fn lines(model: &Model, session: &Session, width: usize) -> Vec<(String, Role)> 
         say(format!("! {}", flag.advice(system)), role);
     }
     if let Some(change) = &answer.change {
-        let hours = format!("{:.1} crew hours", change.moves.crew_hours);
-        say(format!("{}; {hours}", text::moves(context, change, system)), Role::Plain);
-        if let Some((now, _)) = &answer.now {
-            let wells = text::wells_changed(site, now, &answer.setting, system);
-            if !wells.is_empty() {
-                say(format!("the wells carry otherwise: {wells}"), Role::Plain);
-            }
-        }
+        // a well that carries otherwise is a change too, though no gate moves
+        let wells = answer.now.as_ref().map(|now| text::wells_changed(site, &now.0, &answer.setting, system));
+        let hours = change.moves.crew_hours;
+        let parts = [
+            text::moves(context, change, system),
+            wells.unwrap_or_default(),
+            if hours > 0.0 { format!("{hours:.1} crew hours") } else { String::new() },
+        ];
+        let told: Vec<String> = parts.into_iter().filter(|p| !p.is_empty()).collect();
+        say(told.join("; "), Role::Plain);
     }
     if answer.day.is_some() {
         say("this is the day's longest block; targets are judged over the day".into(), Role::Warn);

@@ -1,7 +1,7 @@
 //! What is said of the mix chosen.
 
 use crate::problem::harmless;
-use crate::report::text::{apart, rank, release_words};
+use crate::report::text::{apart, rank, release_words, wells_changed};
 use crate::tasks::rank::Shown;
 use crate::tui::look::Role;
 use crate::units::in_system;
@@ -29,8 +29,15 @@ pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
     for set in &said.set {
         say(&mut out, &format!("set {set}"), width, 2, Role::Tried);
     }
-    if let Some(moves) = &said.moves {
-        say(&mut out, moves, width, 2, Role::Plain);
+    // a well that carries otherwise is a change too, though no gate of it moves
+    let wells = match (&answer.now, &shown.parts[..]) {
+        (Some(now), [part]) => wells_changed(site, &now.day, &part.setting, system),
+        _ => String::new(),
+    };
+    let change: Vec<String> =
+        said.moves.iter().cloned().chain([wells]).filter(|words| !words.is_empty()).collect();
+    if !change.is_empty() {
+        say(&mut out, &change.join("; "), width, 2, Role::Plain);
     }
     if let Some(now) = &answer.now {
         let words = apart(water(now), water(shown), system);
