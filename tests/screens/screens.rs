@@ -31,7 +31,7 @@ const THREE: &[(&str, &str)] = &[("1", "pool"), ("2", "mix"), ("3", "rank")];
 
 fn on(name: &'static str, site: impl Fn() -> String + 'static) -> Scene {
     let driver = Box::new(move || Driver::open(Some(&site()), NORMAL));
-    Scene { name, driver, steps: THREE, sizes: &[NORMAL, WIDE, SMALL] }
+    Scene { name, driver, steps: THREE, sizes: &EVERY }
 }
 
 fn usual_with(name: &'static str, steps: &'static [(&'static str, &'static str)]) -> Scene {

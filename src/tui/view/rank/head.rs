@@ -3,6 +3,7 @@
 use ratatui::layout::Rect;
 
 use crate::problem::harmless;
+use crate::rank::Criterion;
 use crate::report::text::{openings, range, rank};
 use crate::tasks::rank::Shown;
 use crate::tui::look::Role;
@@ -19,7 +20,13 @@ const TALL: u16 = 24;
 pub(super) fn lines(screen: &Screen, area: Rect) -> Lines {
     let (context, answer, system) = (&screen.ranked.context, &screen.ranked.answer, screen.model.system());
     let mut said = warnings(screen);
-    let by: Vec<String> = answer.order.iter().map(|c| c.name().replace('_', " ")).collect();
+    // temperatures within one step of the preferred are as good as one another
+    let near = show(context.site().bins.temperature_c, Dimension::TemperatureDifference, system, 1);
+    let name = |c: &Criterion| match c {
+        Criterion::Preferred if area.height >= TALL => format!("preferred (in steps of {near})"),
+        other => other.name().replace('_', " "),
+    };
+    let by: Vec<String> = answer.order.iter().map(name).collect();
     let words = format!("{}, by {}", rank::release(context, answer, system), by.join(", "));
     said.push((words, Role::Strong));
     let date = context.on.date_naive();
