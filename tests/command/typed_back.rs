@@ -62,3 +62,31 @@ fn scenario_an_opening_beside_a_flow_is_understood_or_refused() {
         assert!(said.failed_with(code).contains(told), "{words}");
     }
 }
+
+/// A setting solved for a temperature gives it, with the total it had; where there is no split for it, it lies outside
+/// what the splits give.
+#[test]
+fn law_a_solution_gives_the_temperature_wanted_and_keeps_the_total() {
+    use gatemix::tasks::{self, Asked, Given, Word};
+    let context = tasks::open(&Asked::default(), chrono::Utc::now()).unwrap();
+    let words = [Word::Set("N3=600cfs"), Word::Set("Sluice=300cfs")];
+    let given = Given::typed(context.site(), &words, context.profile.pool_m).unwrap();
+    let released = |given: &Given| tasks::mix_given(&context, given).unwrap().mix.release;
+    let total = released(&given).flow_m3s;
+    let (mut solved, mut without) = (0, 0);
+    for step in 0..40 {
+        let wanted = 4.0 + 0.4 * f64::from(step);
+        let found = tasks::solve(&context, &given, wanted).unwrap();
+        let [low, high] = found.bracket_c;
+        assert_eq!(found.roots.is_empty(), !(low..=high).contains(&wanted), "{wanted}: {low} to {high}");
+        for (root, setting) in &found.roots {
+            let release = released(setting);
+            assert!((release.temperature_c - wanted).abs() < 1e-6, "{wanted}: {}", release.temperature_c);
+            assert!((release.temperature_c - root.temperature_c).abs() < 1e-9);
+            assert!((release.flow_m3s - total).abs() < 1e-9, "{total}: {}", release.flow_m3s);
+            solved += 1;
+        }
+        without += usize::from(found.roots.is_empty());
+    }
+    assert!(solved > 5 && without > 5, "{solved} solved, {without} without");
+}
