@@ -4,6 +4,8 @@
 
 use ratatui::style::{Color, Modifier, Style};
 
+use crate::plot::Grain;
+
 /// Characters that pictures are drawn with.
 #[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
 pub enum Symbols {
@@ -20,6 +22,15 @@ impl Symbols {
     /// Each with its name in the settings.
     pub const NAMES: [(&'static str, Self); 3] =
         [("braille", Self::Braille), ("block", Self::Block), ("ascii", Self::Ascii)];
+
+    /// The dots that curves are drawn with.
+    pub fn grain(self) -> Grain {
+        match self {
+            Self::Braille => Grain::Braille,
+            Self::Block => Grain::Block,
+            Self::Ascii => Grain::Ascii,
+        }
+    }
 }
 
 /// Where colours come from.

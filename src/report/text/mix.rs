@@ -225,7 +225,7 @@ pub fn range(rule: &Target, system: System) -> String {
 }
 
 /// `ABOVE by 0.4 F`; a miss smaller than the last digit shown must not read as none.
-fn missed(standing: Standing, by: f64, unit: &str) -> String {
+pub fn missed(standing: Standing, by: f64, unit: &str) -> String {
     let amount = if by < 0.05 { format!("less than 0.1 {unit}") } else { format!("{by:.1} {unit}") };
     format!("{} by {amount}", standing.word().to_uppercase())
 }

@@ -16,7 +16,8 @@ use crate::units::{Dimension, System, show};
 
 pub use gates::{instruction, moves, openings};
 pub use mix::{
-    apart, difference, range, release_line, release_words, setting_words, standing_words, wells_changed,
+    apart, difference, missed, range, release_line, release_words, setting_words, standing_words,
+    wells_changed,
 };
 pub use pool::{cold_since_words, layer_words, reach_words, since_words};
 

@@ -7,7 +7,7 @@ use super::super::keys::{Action, Place, action};
 use super::super::model::{Field, Model, Over, Typed, Value};
 use super::{Effect, change, mix, say};
 
-/// Longest text of a field: more is no figure and no folder.
+/// Longest text of a field: more is no figure and no folder (choice).
 const LONGEST: usize = 200;
 
 /// A key while typing.

@@ -1,4 +1,6 @@
 //! The face of the dam with its elevations, and the axes of temperature and oxygen.
+//!
+//! Figures of the layout are choices.
 
 use ratatui::layout::Rect;
 

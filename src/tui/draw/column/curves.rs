@@ -1,4 +1,6 @@
 //! The curves of the casts, each with its letter at its ends.
+//!
+//! Figures of the layout are choices.
 
 use crate::plot::{Dots, Scale, Stroke};
 use crate::tui::Role;

@@ -86,11 +86,7 @@ impl<'a> Pen<'a> {
     }
 
     pub(super) fn grain(&self) -> Grain {
-        match self.look.symbols {
-            Symbols::Braille => Grain::Braille,
-            Symbols::Block => Grain::Block,
-            Symbols::Ascii => Grain::Ascii,
-        }
+        self.look.symbols.grain()
     }
 
     /// Text cut at `width` cells and at the area.

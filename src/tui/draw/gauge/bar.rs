@@ -1,4 +1,6 @@
 //! The bars of a gauge on their axis.
+//!
+//! Figures of the layout are choices.
 
 use crate::plot::{Scale, ticks};
 use crate::tui::draw::pen::{Pen, decimals};

@@ -1,7 +1,11 @@
 //! The lines of a gauge: which there are, which stay where there is little room, and their columns.
+//!
+//! Figures of the layout are choices.
 
 use ratatui::buffer::Buffer;
 use ratatui::layout::Rect;
+
+use crate::report::text;
 use unicode_width::UnicodeWidthStr;
 
 use crate::target::Standing;
@@ -220,11 +224,8 @@ fn whole_words(text: &str, room: usize) -> &str {
 /// `ABOVE by 0.4 F`, as the text report says it; a miss smaller than the last digit shown must not read as none.
 fn missed(standing: Standing, by: f64, unit: &str) -> [String; 2] {
     let word = standing.word().to_uppercase();
-    if by < 0.05 {
-        [format!("{word} by less than 0.1 {unit}"), format!("{word} by <0.1")]
-    } else {
-        [format!("{word} by {by:.1} {unit}"), format!("{word} by {by:.1}")]
-    }
+    let short = if by < 0.05 { format!("{word} by <0.1") } else { format!("{word} by {by:.1}") };
+    [text::missed(standing, by, unit), short]
 }
 
 impl Gauge {

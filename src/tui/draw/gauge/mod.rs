@@ -1,5 +1,7 @@
 //! The release held against every target that applies, on one axis: ranges, what is tried, what is set now, and what
 //! is attainable.
+//!
+//! Figures of the layout are choices.
 
 mod bar;
 mod fill;

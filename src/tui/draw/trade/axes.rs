@@ -1,9 +1,11 @@
 //! Frame of the trade picture: scales, ticks, bounds and the lines that lead to the selected mix.
+//!
+//! Figures of the layout are choices.
 
 use ratatui::layout::Rect;
 use unicode_width::UnicodeWidthStr;
 
-use crate::plot::{Scale, ticks};
+use crate::plot::{Dots, Grain, Scale, Stroke, ticks};
 use crate::tui::draw::pen::{Pen, cut, decimals};
 use crate::tui::{Look, Role, Symbols};
 use crate::units::Dimension;
@@ -71,19 +73,13 @@ impl Frame {
         }
     }
 
-    /// Place of a point in dots, so many to a cell either way, from the upper left of the plot.
-    pub(super) fn dots(
-        &self,
-        picture: &TradePicture,
-        p: &TradePoint,
-        per: (usize, usize),
-    ) -> Option<[f64; 2]> {
-        let (y, oxygen) = (self.y?, p.oxygen_mg_l?);
-        let rows = self.plot_rows();
-        let share = |scale: &Scale, v: f64| (v - scale.low()) / (scale.high() - scale.low());
-        let along = share(&self.x, picture.shown(p.temperature_c)) * (self.cols * per.0) as f64;
-        let down = (1.0 - share(&y, oxygen)) * (rows * per.1) as f64;
-        Some([along, down])
+    /// Points of known oxygen joined in their order; `None` without an axis of oxygen.
+    pub(super) fn line(&self, picture: &TradePicture, points: &[&TradePoint], grain: Grain) -> Option<Dots> {
+        let at = |p: &&TradePoint| Some((picture.shown(p.temperature_c), p.oxygen_mg_l?));
+        let points: Vec<(f64, f64)> = points.iter().filter_map(at).collect();
+        let mut dots = Dots::new(grain, self.cols, self.plot_rows());
+        dots.curve(0, Stroke::Thin, &points, &self.x, &self.y?);
+        Some(dots)
     }
 
     /// Rows of the plot that the scale of oxygen spans.

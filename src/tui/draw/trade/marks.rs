@@ -1,7 +1,9 @@
 //! Marks of the trade picture: the line of the unbeaten mixes, and the numbers of the ranked ones.
+//!
+//! Figures of the layout are choices.
 
 use crate::tui::draw::pen::Pen;
-use crate::tui::{Look, Role, Symbols};
+use crate::tui::{Look, Role};
 
 use super::axes::{Frame, OVER, SIDE};
 use super::{TradePicture, TradePoint};
@@ -166,59 +168,13 @@ pub(super) fn at(picture: &TradePicture, frame: &Frame, col: usize, row: usize) 
 fn unbeaten(picture: &TradePicture, frame: &Frame, pen: &mut Pen, look: Look) {
     let mut points: Vec<&TradePoint> = picture.unbeaten.iter().filter(|p| p.oxygen_mg_l.is_some()).collect();
     points.sort_by(|a, b| a.temperature_c.total_cmp(&b.temperature_c));
-    let per = match look.symbols {
-        Symbols::Braille => (2, 4),
-        Symbols::Block => (1, 2),
-        Symbols::Ascii => (1, 1),
-    };
-    let rows = frame.rows * per.1;
-    let mut dots = vec![false; frame.cols * per.0 * rows];
-    for pair in points.windows(2) {
-        let ends = [pair[0], pair[1]].map(|p| frame.dots(picture, p, per));
-        let [Some(from), Some(to)] = ends else { continue };
-        // closer than a dot, so that no line is broken
-        let steps = (2.0 * (to[0] - from[0]).abs().max((to[1] - from[1]).abs())).ceil().max(1.0);
-        let mut step = 0.0;
-        while step <= steps {
-            let along = |i: usize| from[i] + (to[i] - from[i]) * step / steps;
-            let dot = |place: f64, cells: usize| {
-                // counted rather than cast: casts hide what lies outside
-                (1..cells).take_while(|&c| place >= c as f64).last().unwrap_or(0)
-            };
-            let (x, y) = (dot(along(0), frame.cols * per.0), dot(along(1), rows));
-            dots[y * frame.cols * per.0 + x] = true;
-            step += 1.0;
-        }
-    }
-    let lit = |x: usize, y: usize| dots[y * frame.cols * per.0 + x];
-    for row in 0..frame.rows {
-        for col in 0..frame.cols {
-            let cell = |dx: usize, dy: usize| lit(col * per.0 + dx, row * per.1 + dy);
-            let symbol = match look.symbols {
-                Symbols::Braille => braille(&cell),
-                Symbols::Block => match (cell(0, 0), cell(0, 1)) {
-                    (true, true) => Some('█'),
-                    (true, false) => Some('▀'),
-                    (false, true) => Some('▄'),
-                    _ => None,
-                },
-                Symbols::Ascii => cell(0, 0).then_some('*'),
-            };
-            if let Some(symbol) = symbol {
-                pen.put(SIDE + col, OVER + row, &symbol.to_string(), Role::Oxygen);
-            }
-        }
+    let line = frame.line(picture, &points, look.symbols.grain());
+    for (row, col) in (0..frame.rows).flat_map(|row| (0..frame.cols).map(move |col| (row, col))) {
+        let Some(spot) = line.as_ref().and_then(|line| line.spot(col, row)) else { continue };
+        pen.put(SIDE + col, OVER + row, &spot.glyph.to_string(), Role::Oxygen);
     }
     for point in points {
         let (col, row) = (frame.col(picture, point.temperature_c), frame.row(point, (0, 1)));
         pen.put(col, row, "o", Role::Oxygen);
     }
-}
-
-/// The braille letter of a cell of two by four dots.
-fn braille(lit: &dyn Fn(usize, usize) -> bool) -> Option<char> {
-    // dots are numbered down the left, down the right, then the lowest row (Unicode, block Braille Patterns, standard)
-    let places = [(0, 0), (0, 1), (0, 2), (1, 0), (1, 1), (1, 2), (0, 3), (1, 3)];
-    let bits: u32 = places.iter().zip(0..).map(|(&(x, y), bit)| u32::from(lit(x, y)) << bit).sum();
-    if bits == 0 { None } else { char::from_u32(0x2800 + bits) }
 }
