@@ -16,9 +16,11 @@ use super::text::{self, Format, Source};
 use super::yaml::Document;
 use inside::inside;
 
+mod around;
 mod found;
 mod inside;
 
+pub use around::Around;
 pub use found::{Found, Stamps, sites_in, stamps};
 pub use inside::{demonstration_files, demonstrations};
 
@@ -43,6 +45,8 @@ pub struct Folder {
     source: Source,
     /// Every cast, once they were asked for.
     casts: Arc<OnceLock<Vec<Listed>>>,
+    /// The files beside them, once they were asked for.
+    around: Arc<OnceLock<Around>>,
 }
 
 /// Why a site cannot be opened, and the units its user reads.
@@ -123,7 +127,9 @@ impl Folder {
         let mut notes = read.problems;
         notes.extend(source.note());
         match read.site {
-            Some(site) => Ok(Self { root, site, notes, source, casts: Arc::default() }),
+            Some(site) => {
+                Ok(Self { root, site, notes, source, casts: Arc::default(), around: Arc::default() })
+            }
             None => Err(Refused { problems: notes, system: read.system }),
         }
     }

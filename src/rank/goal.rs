@@ -146,10 +146,10 @@ impl Goal {
         for rule in site.targets.iter().filter(|t| t.span.contains(date) && t.point == "dam") {
             let by: &[usize] = match rule.statistic {
                 _ if steady => &[0],
-                Statistic::DailyMean => &[0],
-                Statistic::DailyMax | Statistic::SevenDayMeanOfMaxima => &[1],
-                Statistic::DailyMin => &[2],
                 Statistic::Instantaneous => &[1, 2],
+                Statistic::DailyMin => &[2],
+                Statistic::DailyMax | Statistic::SevenDayMeanOfMaxima => &[1],
+                _ => &[0],
             };
             for &i in by {
                 wanted[i].add(rule);

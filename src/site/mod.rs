@@ -8,9 +8,11 @@ mod limits;
 mod outlet;
 mod pool;
 mod raw;
+mod river;
 
-use chrono::FixedOffset;
+use chrono::{FixedOffset, NaiveDate};
 
+use crate::series::Coverage;
 use crate::target::Target;
 use crate::units::{Datum, Folder};
 
@@ -23,6 +25,7 @@ pub use raw::{
     Raw, RawAvoid, RawLimits, RawNow, RawOutage, RawOutlet, RawPool, RawReserved, RawShare, RawTarget,
     RawUndrawn, RawWell,
 };
+pub use river::{Afterbay, Decay, Inflow, Point, Reach, River, Seepage, Surface, Yearly};
 
 /// Where the dam stands.
 #[derive(Debug, Clone, Copy, Default, PartialEq)]
@@ -190,8 +193,10 @@ pub struct ListedCast {
 pub struct Site {
     /// Name.
     pub name: String,
-    /// River below the dam.
-    pub river: Option<String>,
+    /// Name of the river below the dam.
+    pub river_name: Option<String>,
+    /// The river down to where rules apply.
+    pub river: Option<River>,
     /// Units of bare numbers in the folder.
     pub units: Folder,
     /// Datum of every elevation.
@@ -222,6 +227,12 @@ pub struct Site {
     pub now_wells: Vec<(usize, f64)>,
     /// Targets.
     pub targets: Vec<Target>,
+    /// Type of the water year, as the rules name it.
+    pub year_type: Option<String>,
+    /// Events that end rules, with their dates.
+    pub events: Vec<(String, NaiveDate)>,
+    /// How much of a record must be there.
+    pub coverage: Coverage,
     /// Thresholds of cold water, C.
     pub cold_water_c: Vec<f64>,
     /// Water chemistry.

@@ -231,8 +231,8 @@ pub struct RawTarget {
 pub struct Raw {
     /// Name.
     pub name: Option<String>,
-    /// River.
-    pub river: Option<String>,
+    /// Name of the river.
+    pub river_name: Option<String>,
     /// Units of bare numbers.
     pub units: Folder,
     /// Datum.

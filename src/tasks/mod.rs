@@ -4,6 +4,7 @@
 //! the clock from its caller.
 
 use std::path::{Path, PathBuf};
+use std::sync::Arc;
 
 use chrono::{DateTime, FixedOffset, SubsecRound, Utc};
 
@@ -13,6 +14,7 @@ use crate::files::template;
 use crate::files::text::Source;
 use crate::problem::Problem;
 use crate::profile::Profile;
+use crate::river::Conditions;
 use crate::site::Site;
 use crate::units::{Dimension, System};
 
@@ -119,6 +121,8 @@ pub struct Context {
     pub fingerprint: String,
     /// Units shown.
     pub system: System,
+    /// What the folder tells of the river.
+    pub conditions: Arc<Conditions>,
     /// The cast's bytes.
     source: Source,
 }
@@ -140,7 +144,8 @@ impl Context {
         let age_days = profile.age_days(on);
         age_flags(&folder.site, &mut profile, age_days);
         let fingerprint = folder.fingerprint(&[&source]);
-        Self { folder, profile, on, on_from, age_days, fingerprint, system, source }
+        let conditions = folder.conditions();
+        Self { folder, profile, on, on_from, age_days, fingerprint, system, conditions, source }
     }
 }
 

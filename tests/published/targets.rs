@@ -96,8 +96,7 @@ fn target(low_c: Option<f64>, high_c: Option<f64>, buffer_c: f64, oxygen_min_mg_
         high_c,
         buffer_c,
         oxygen_min_mg_l,
-        point: "dam".into(),
-        source: None,
+        ..Target::default()
     }
 }
 

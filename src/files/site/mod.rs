@@ -133,7 +133,7 @@ fn raw_site(map: Map) -> Raw {
     let mut raw = Raw { units: units(&map), ..Raw::default() };
     let read = In { units: raw.units };
     raw.name = map.required("name").and_then(|v| v.text().map(str::to_owned));
-    raw.river = text(&map, "river");
+    raw.river_name = text(&map, "river");
     raw.datum = text(&map, "datum");
     raw.utc_offset = text(&map, "utc_offset");
     within(&map, "place", |place| {

@@ -85,7 +85,7 @@ fn head(context: &Context, fingerprint: &str) -> String {
     let site = context.site();
     let profile = &context.profile;
     let mut out = harmless(&site.name);
-    if let Some(river) = &site.river {
+    if let Some(river) = &site.river_name {
         let _ = write!(out, " on the {}", harmless(river));
     }
     if site.demonstration {

@@ -64,7 +64,11 @@ impl Site {
         let site = (|| {
             Some(Self {
                 name: raw.name.clone()?,
-                river: raw.river.clone(),
+                river_name: raw.river_name.clone(),
+                river: None,
+                year_type: None,
+                events: Vec::new(),
+                coverage: crate::series::Coverage::default(),
                 units: raw.units,
                 datum: datum?,
                 offset,

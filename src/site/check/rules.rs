@@ -63,6 +63,7 @@ pub(super) fn target(t: &RawTarget, i: usize, problems: &mut Vec<Problem>) -> Op
         oxygen_min_mg_l: t.oxygen_min_mg_l,
         point,
         source: t.source.clone(),
+        ..Target::default()
     };
     problems.extend(built.problems(&path));
     Some(built)

@@ -229,10 +229,10 @@ impl Day<'_> {
         let valid = |t: &&gatemix::target::Target| t.span.contains(question.date) && t.point == "dam";
         for rule in question.site.targets.iter().filter(valid) {
             let values = match rule.statistic {
-                Statistic::DailyMean => vec![self.mean_c],
                 Statistic::DailyMax | Statistic::SevenDayMeanOfMaxima => vec![most(self.temperatures)],
                 Statistic::DailyMin => vec![least(self.temperatures)],
                 Statistic::Instantaneous => vec![most(self.temperatures), least(self.temperatures)],
+                _ => vec![self.mean_c],
             };
             for value in values {
                 let over = |bound: Option<f64>| bound.map_or(0.0, |b| value - b);

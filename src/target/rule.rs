@@ -1,144 +1,16 @@
-//! Targets: rules the user enters, valid over a span of dates, and how a release stands against them.
+//! A rule the user enters, and how a value stands against it.
 //!
 //! Methods: `docs/methods.md`, section 7.
 
-use chrono::{Datelike, NaiveDate};
+use chrono::NaiveDate;
 
 use crate::problem::Problem;
 use crate::units::say;
 
-/// A day of the year, month and day.
-#[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
-pub struct YearDay {
-    /// 1 to 12.
-    pub month: u32,
-    /// 1 to 31.
-    pub day: u32,
-}
+use super::{OxygenStatistic, Span, Standing, Statistic};
 
-impl YearDay {
-    /// `MM-DD`; 29 February is a day.
-    pub fn parse(text: &str) -> Option<Self> {
-        let (month, day) = text.trim().split_once('-')?;
-        let plain = |t: &str| t.len() <= 2 && t.bytes().all(|b| b.is_ascii_digit());
-        if !plain(month) || !plain(day) {
-            return None;
-        }
-        let (month, day) = (month.parse().ok()?, day.parse().ok()?);
-        NaiveDate::from_ymd_opt(2024, month, day).map(|_| Self { month, day })
-    }
-}
-
-/// Days of the year from `from` to `to`, both included; `to` before `from` wraps over New Year.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
-pub struct Span {
-    /// First day.
-    pub from: YearDay,
-    /// Last day.
-    pub to: YearDay,
-}
-
-impl Span {
-    /// Every day of the year.
-    pub const YEAR: Self = Self { from: YearDay { month: 1, day: 1 }, to: YearDay { month: 12, day: 31 } };
-
-    /// Whether a date lies in the span.
-    pub fn contains(&self, date: NaiveDate) -> bool {
-        let day = YearDay { month: date.month(), day: date.day() };
-        if self.from <= self.to {
-            self.from <= day && day <= self.to
-        } else {
-            day >= self.from || day <= self.to
-        }
-    }
-}
-
-/// The statistic over time that a rule speaks of.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
-pub enum Statistic {
-    /// Any reading.
-    Instantaneous,
-    /// Mean of the day.
-    DailyMean,
-    /// Maximum of the day.
-    DailyMax,
-    /// Minimum of the day.
-    DailyMin,
-    /// Seven-day mean of the daily maxima (7DADM).
-    SevenDayMeanOfMaxima,
-}
-
-impl Statistic {
-    /// All statistics with the names used in files.
-    pub const NAMES: [(&'static str, Self); 5] = [
-        ("instantaneous", Self::Instantaneous),
-        ("daily_mean", Self::DailyMean),
-        ("daily_max", Self::DailyMax),
-        ("daily_min", Self::DailyMin),
-        ("7dadm", Self::SevenDayMeanOfMaxima),
-    ];
-
-    /// The name used in files.
-    pub fn name(self) -> &'static str {
-        Self::NAMES.iter().find(|(_, s)| *s == self).map_or("", |(n, _)| n)
-    }
-
-    /// The statistic of a name.
-    pub fn parse(name: &str) -> Option<Self> {
-        Self::NAMES.iter().find(|(n, _)| *n == name).map(|(_, s)| *s)
-    }
-
-    /// The statistic of temperatures that each hold for a share of the day, C; the shares sum to 1. One temperature all
-    /// day is itself by every statistic.
-    pub fn over(self, parts: &[(f64, f64)]) -> f64 {
-        let values = parts.iter().map(|p| p.1);
-        match self {
-            Self::DailyMean => mean(parts),
-            Self::DailyMin => values.fold(f64::INFINITY, f64::min),
-            Self::Instantaneous | Self::DailyMax | Self::SevenDayMeanOfMaxima => {
-                values.fold(f64::NEG_INFINITY, f64::max)
-            }
-        }
-    }
-
-    /// The same of oxygen, mg/L: what the floor is held against is the mean where the rule speaks of one, else the
-    /// least.
-    pub fn oxygen_over(self, parts: &[(f64, f64)]) -> f64 {
-        match self {
-            Self::DailyMean => mean(parts),
-            _ => parts.iter().map(|p| p.1).fold(f64::INFINITY, f64::min),
-        }
-    }
-}
-
-fn mean(parts: &[(f64, f64)]) -> f64 {
-    parts.iter().map(|(share, value)| share * value).sum()
-}
-
-/// Where a value stands against a range.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
-pub enum Standing {
-    /// Within the range, or above the oxygen minimum.
-    Inside,
-    /// Below it.
-    Below,
-    /// Above it.
-    Above,
-    /// The value is missing, or the rule sets no such bound.
-    Unknown,
-}
-
-impl Standing {
-    /// The word used in every output.
-    pub fn word(self) -> &'static str {
-        match self {
-            Self::Inside => "inside",
-            Self::Below => "below",
-            Self::Above => "above",
-            Self::Unknown => "unknown",
-        }
-    }
-}
+/// The name of the dam among the points.
+pub const DAM: &str = "dam";
 
 /// A rule the user entered.
 #[derive(Debug, Clone, PartialEq)]
@@ -159,10 +31,67 @@ pub struct Target {
     pub buffer_c: f64,
     /// Least oxygen, mg/L.
     pub oxygen_min_mg_l: Option<f64>,
-    /// Where it applies.
+    /// Least oxygen over saturation, 0 to 1 and above.
+    pub oxygen_min_share: Option<f64>,
+    /// What the floor speaks of; by the statistic of the temperature where none is given.
+    pub oxygen_statistic: Option<OxygenStatistic>,
+    /// Where it applies: `dam` or a point of the river.
     pub point: String,
+    /// Its range is that of the difference from the temperature of this reference.
+    pub reference: Option<Reference>,
+    /// Water-year types in which it is valid; in all where empty.
+    pub years: Vec<String>,
+    /// Last day on which it is valid, where an event ends it before its span does.
+    pub until: Option<NaiveDate>,
+    /// Name of that event.
+    pub until_event: Option<String>,
+    /// Something wished for: it orders like a preference and is never missed.
+    pub soft: bool,
+    /// 1 comes first: where rules conflict, those of a larger number are held as wishes.
+    pub priority: u32,
+    /// Who set it.
+    pub authority: Option<String>,
     /// Where the rule is written.
     pub source: Option<String>,
+    /// An example: its values are nobody's licence.
+    pub example: bool,
+}
+
+impl Default for Target {
+    /// A rule for every day at the dam that sets no bound yet.
+    fn default() -> Self {
+        Self {
+            name: String::new(),
+            span: Span::YEAR,
+            statistic: Statistic::DailyMean,
+            low_c: None,
+            preferred_c: None,
+            high_c: None,
+            buffer_c: 0.0,
+            oxygen_min_mg_l: None,
+            oxygen_min_share: None,
+            oxygen_statistic: None,
+            point: DAM.into(),
+            reference: None,
+            years: Vec::new(),
+            until: None,
+            until_event: None,
+            soft: false,
+            priority: 1,
+            authority: None,
+            source: None,
+            example: false,
+        }
+    }
+}
+
+/// What a temperature is compared with.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub enum Reference {
+    /// The river as it would be in balance with the air: the equilibrium temperature of the day.
+    Natural,
+    /// A side stream or a point, by its name.
+    Stream(String),
 }
 
 impl Target {
