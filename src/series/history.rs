@@ -8,6 +8,14 @@ use chrono::NaiveDate;
 
 use super::{Coverage, Day, Days};
 
+/// Means of readings that all lie on a bound come within this of it by rounding; then the bound is met (choice).
+const ROUNDING: f64 = 1e-9;
+
+/// Whether a figure lies above a bound by more than rounding.
+pub fn exceeds(value: f64, bound: f64) -> bool {
+    value - bound > ROUNDING
+}
+
 /// What is added up over a window, and how many of its days were there.
 #[derive(Debug, Clone, Copy, Default, PartialEq)]
 pub struct Window {
@@ -91,7 +99,7 @@ impl Days {
     /// Days in a row, `last` the last of them, whose maximum lies above `high`. A day that is not valid ends the row.
     pub fn run_above(&self, last: NaiveDate, high: f64) -> u32 {
         let before = std::iter::successors(Some(last), NaiveDate::pred_opt);
-        count(before.take_while(|date| self.on(*date).is_some_and(|day| day.max > high)).count())
+        count(before.take_while(|date| self.on(*date).is_some_and(|day| exceeds(day.max, high))).count())
     }
 
     /// Least daily maximum of so many days, `last` among them: above `high` just when all of them are. With days
@@ -100,14 +108,17 @@ impl Days {
         let from = first_of(last, n.max(1))?;
         let least = self.days.range(from..=last).map(|(_, day)| day.max).reduce(f64::min)?;
         let whole = self.days.range(from..=last).count() as u64 == u64::from(n.max(1));
-        (whole || least <= high).then_some(least)
+        (whole || !exceeds(least, high)).then_some(least)
     }
 
     /// Valid days with a maximum above `high`, `from` and `to` included.
     pub fn count_above(&self, from: NaiveDate, to: NaiveDate, high: f64) -> Count {
-        let of = self.between(from, to, |day| f64::from(u8::from(day.max > high)));
-        let above =
-            if from > to { 0 } else { self.days.range(from..=to).filter(|(_, day)| day.max > high).count() };
+        let of = self.between(from, to, |day| f64::from(u8::from(exceeds(day.max, high))));
+        let above = if from > to {
+            0
+        } else {
+            self.days.range(from..=to).filter(|(_, day)| exceeds(day.max, high)).count()
+        };
         Count { above: count(above), valid: of.valid, days: of.days }
     }
 

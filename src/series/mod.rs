@@ -8,7 +8,7 @@ mod history;
 use chrono::{DateTime, FixedOffset, NaiveDate, TimeDelta};
 
 pub use days::{Coverage, Day, Days};
-pub use history::{Count, Window};
+pub use history::{Count, Window, exceeds};
 
 /// Longest time between two readings that a value is taken from in between, hours (choice).
 pub const LONGEST_GAP_H: i64 = 3;
