@@ -108,6 +108,11 @@ impl Column {
 /// Values that loggers write for "no reading".
 const SENTINELS: [f64; 9] = [-99.0, -99.9, -99.99, -999.0, -999.9, -999.99, -9999.0, -9999.9, -99999.0];
 
+/// Whether a number is one that loggers write for "no reading".
+pub(super) fn is_sentinel(value: f64) -> bool {
+    SENTINELS.iter().any(|s| (s - value).abs() < 1e-9)
+}
+
 /// What the command line or the site file says of a cast that the cast itself may lack.
 #[derive(Debug, Clone, Default, PartialEq)]
 pub struct Told {
@@ -268,7 +273,7 @@ fn rows(table: &Table, columns: &[Option<Column>], problems: &mut Vec<Problem>) 
         for (c, column) in columns.iter().enumerate() {
             let Some(column) = column else { continue };
             match table.number(r, c) {
-                Ok(Some(value)) if SENTINELS.iter().any(|s| (s - value).abs() < 1e-9) => absent.push(line),
+                Ok(Some(value)) if is_sentinel(value) => absent.push(line),
                 Ok(Some(value)) => column.put(&mut row, value),
                 Ok(None) => {}
                 Err(problem) => problems.push(problem),
@@ -364,4 +369,4 @@ pub fn parse_time(text: &str, offset: FixedOffset) -> Result<DateTime<FixedOffse
 }
 
 /// Years a cast or a decision can be of (choice): others are slips of the pen.
-const YEARS: std::ops::RangeInclusive<i32> = 1900..=2200;
+pub(super) const YEARS: std::ops::RangeInclusive<i32> = 1900..=2200;

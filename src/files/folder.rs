@@ -382,6 +382,7 @@ pub fn check(named: &str) -> (Vec<Problem>, System) {
             for listed in casts {
                 problems.extend(folder.profile_of(listed).1);
             }
+            problems.extend(folder.around().problems.iter().cloned());
             (problems, folder.site.units.system())
         }
     }

@@ -1,5 +1,6 @@
 //! What a site file said, in SI, before any check.
 
+use crate::series::Coverage;
 use crate::units::Folder;
 
 use super::{
@@ -275,6 +276,8 @@ pub struct Raw {
     pub checks: CastChecks,
     /// Band.
     pub band: BandInputs,
+    /// How much of a record must be there.
+    pub coverage: Coverage,
     /// Header mapping.
     pub columns: Vec<(String, String)>,
     /// Listed casts.

@@ -2,12 +2,16 @@
 //!
 //! Methods: `docs/methods.md`, section 7.
 
+mod observed;
 mod rule;
 mod span;
 mod standing;
 mod statistic;
+mod tally;
 
+pub use observed::{Observed, observed};
 pub use rule::{DAM, Reference, Target};
 pub use span::{Span, YearDay};
 pub use standing::Standing;
 pub use statistic::{OxygenStatistic, Statistic};
+pub use tally::{Held, Mark, Tally};

@@ -135,6 +135,8 @@ pub struct Context {
     pub system: System,
     /// What the folder tells of the river.
     pub conditions: Arc<Conditions>,
+    /// What an answer has to say of the files that tell it.
+    pub said: Vec<Problem>,
     /// The cast's bytes.
     source: Source,
 }
@@ -155,9 +157,12 @@ impl Context {
         let folder::Read { mut profile, source } = read;
         let age_days = profile.age_days(on);
         age_flags(&folder.site, &mut profile, age_days);
-        let fingerprint = folder.fingerprint(&[&source]);
+        let around = folder.around();
+        let said = around.said.clone();
+        let sources: Vec<&Source> = [&source].into_iter().chain(&around.sources).collect();
+        let fingerprint = folder.fingerprint(&sources);
         let conditions = folder.conditions();
-        Self { folder, profile, on, on_from, age_days, fingerprint, system, conditions, source }
+        Self { folder, profile, on, on_from, age_days, fingerprint, system, conditions, said, source }
     }
 }
 

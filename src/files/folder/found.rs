@@ -4,7 +4,10 @@ use std::fs::{self, DirEntry};
 use std::path::{Path, PathBuf};
 use std::time::SystemTime;
 
-use super::{SITE_FILE, cast_paths, demonstrations, places};
+use crate::files::text::YAML_CAP;
+
+use super::around::{TAILWATER, stays_within};
+use super::{SITE_FILE, cast_paths, demonstrations, is_csv, places};
 
 /// A site among others.
 #[derive(Debug, Clone, PartialEq, Eq)]
@@ -36,7 +39,7 @@ pub fn sites_in(path: &Path) -> Vec<Found> {
 pub type Stamps = Vec<(PathBuf, SystemTime, u64)>;
 
 /// When each file that an answer on a site can come from was last written, and its length in bytes: the site file,
-/// sound or not, and every cast of the folder. Two lists differ where a file changed, came or went. Empty for a
+/// sound or not, every cast of the folder, the tailwater record, and what else the site file names. Two lists differ where a file changed, came or went. Empty for a
 /// demonstration held in memory.
 pub fn stamps(named: &str) -> Stamps {
     let path = Path::new(named);
@@ -44,13 +47,31 @@ pub fn stamps(named: &str) -> Stamps {
         return Vec::new();
     }
     let (root, file) = places(path);
+    let named = named_in(&file).into_iter().map(|name| root.join(name));
     [file]
         .into_iter()
         .chain(cast_paths(&root))
+        .chain(named)
         .filter_map(|path| {
             let about = fs::metadata(&path).ok()?;
             // where a file system keeps no times the length has to do
             Some((path, about.modified().unwrap_or(SystemTime::UNIX_EPOCH), about.len()))
         })
         .collect()
+}
+
+/// Names of files beside the casts: the tailwater record, and every word of a site file that ends like one. The site
+/// need not be sound for that, and a name too many only means one file more to watch.
+fn named_in(site_file: &Path) -> Vec<String> {
+    let mut names = vec![TAILWATER.to_owned()];
+    let size = fs::metadata(site_file).map_or(0, |about| about.len());
+    let text = if size <= YAML_CAP { fs::read(site_file).unwrap_or_default() } else { Vec::new() };
+    let text = String::from_utf8_lossy(&text);
+    let words = text.split(['\n', '\r', '"', '\'', '{', '}', '[', ']', ',', ':', '#']).map(str::trim);
+    for word in words.filter(|word| is_csv(Path::new(word)) && stays_within(word)) {
+        if !names.iter().any(|name| name == word) {
+            names.push(word.to_owned());
+        }
+    }
+    names
 }

@@ -11,6 +11,7 @@ use crate::units::{Dimension, Folder, System};
 
 use crate::files::cast::{Column, TIME_CURE, parse_time};
 use crate::files::cursor::{Map, Scalar, Value, Walk};
+use crate::files::station;
 use crate::files::yaml::{Document, Node};
 
 /// What a site file gave.
@@ -173,6 +174,10 @@ fn raw_site(map: Map) -> Raw {
     });
     within(&map, "checks", |m| checks(&read, m, &mut raw));
     within(&map, "band", |m| band(&read, m, &mut raw));
+    within(&map, "coverage", |m| {
+        raw.coverage.hours = whole(m, "hours").unwrap_or(raw.coverage.hours);
+        raw.coverage.days = whole(m, "days").unwrap_or(raw.coverage.days);
+    });
     within(&map, "columns", |m| {
         raw.columns =
             m.entries().iter().filter_map(|(from, to)| Some(((*from).to_owned(), column(to)?))).collect();
@@ -199,11 +204,12 @@ fn taken(value: &Value) -> Option<String> {
 /// One of our column names, as a logger's header is mapped to it.
 fn column(value: &Value) -> Option<String> {
     let name = value.text()?;
-    if Column::parse(name).is_none() {
-        let known: Vec<&str> = Column::ALL.iter().map(|c| c.name()).collect();
+    if Column::parse(name).is_none() && station::Column::parse(name).is_none() {
+        let mut known: Vec<&str> = Column::ALL.iter().map(|c| c.name()).collect();
+        known.extend(station::Column::ALL.iter().map(|c| c.name()).filter(|n| Column::parse(n).is_none()));
         value.report(Problem::refused(
             "column",
-            format!("`{name}` is not a column of a cast"),
+            format!("`{name}` is not a column of a cast or a station"),
             format!("use one of {}", known.join(", ")),
         ));
     }

@@ -58,6 +58,7 @@ impl Site {
             raw.targets.iter().enumerate().map(|(i, t)| rules::target(t, i, &mut problems)).collect();
         let (now, now_wells) = operation::now(raw, &outlets, &mut problems);
         rules::spread(raw, &mut problems);
+        coverage(raw, &mut problems);
         if any_refused(&problems) {
             return (None, problems);
         }
@@ -68,7 +69,7 @@ impl Site {
                 river: None,
                 year_type: None,
                 events: Vec::new(),
-                coverage: crate::series::Coverage::default(),
+                coverage: raw.coverage,
                 units: raw.units,
                 datum: datum?,
                 offset,
@@ -183,6 +184,23 @@ fn place(raw: &Raw, problems: &mut Vec<Problem>) -> Whereabouts {
         );
     }
     Whereabouts { altitude_m: raw.altitude_m, latitude_deg: raw.latitude_deg }
+}
+
+/// How much of a day and of a week must be recorded: no more than there is.
+fn coverage(raw: &Raw, problems: &mut Vec<Problem>) {
+    let of = &raw.coverage;
+    for (value, most, key) in [(of.hours, 24, "hours"), (of.days, 7, "days")] {
+        if !(1..=most).contains(&value) {
+            problems.push(
+                Problem::refused(
+                    "coverage",
+                    format!("{key} must be 1 to {most}"),
+                    "the usual is 22 hours and 6 days",
+                )
+                .at(format!("coverage.{key}")),
+            );
+        }
+    }
 }
 
 fn names(raw: &Raw, problems: &mut Vec<Problem>) {
