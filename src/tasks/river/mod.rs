@@ -8,7 +8,8 @@ mod way;
 use crate::problem::Problem;
 use crate::target::DAM;
 
-use super::rank::{Progress, RankAsked, Shown, rank};
+use super::rank::{RankAsked, Shown, rank};
+use crate::rank::Progress;
 use super::{Context, Failure, MixAnswer, Word, mix};
 
 pub use ahead::{Arriving, Timely};

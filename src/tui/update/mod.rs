@@ -20,6 +20,8 @@ use crate::tasks::rank::RankAsked;
 use crate::tasks::{Asked, Given};
 use crate::units::System;
 
+pub(super) use river::rules;
+
 use super::keys::{Action, Place, action};
 use super::model::{Choice, Draft, Likes, Message, Model, Over, Screen, Session, Stage, Under};
 use super::view::{answer_text, mix_rows, rank_rows, river_rows};

@@ -1,8 +1,10 @@
 //! What arrives downstream, in words.
 
+mod ahead;
 mod places;
+mod record;
+mod rules;
 
-use crate::mix::Spread;
 use crate::problem::{Problem, harmless};
 use crate::tasks::Context;
 use crate::tasks::river::{RiverAnswer, Way, Which};
@@ -10,7 +12,10 @@ use crate::units::System;
 
 use super::{flow, labelled, list, setting_words, wrapped};
 
+pub use ahead::{days, timely_words};
 pub use places::{PlaceRow, places, stage_words, window_words};
+pub use record::{PROVISIONAL, SIGNS, calendar, record};
+pub use rules::{EXAMPLE, RuleRow, RuleStanding, conflicts, rules};
 
 /// Columns of a label of the table of places, and of each place.
 const LABEL: usize = 20;
@@ -25,6 +30,20 @@ pub(super) fn body(context: &Context, answer: &RiverAnswer) -> String {
     }
     out.push('\n');
     out.push_str(&table(&places(context, answer, system)));
+    out.push('\n');
+    out.push_str(&needed(context, answer, system));
+    out.push_str(&standings(context, answer, system));
+    for (i, line) in days(context, answer, system).into_iter().enumerate() {
+        out.push_str(if i == 0 { "Day by day, each release held\n  " } else { "  " });
+        out.push_str(&line);
+        out.push('\n');
+    }
+    out.push('\n');
+    let mut recorded = String::from("Recorded\n");
+    for (line, _) in record(context, answer, system, super::WIDTH - 2) {
+        recorded.push_str(&format!("  {line}\n"));
+    }
+    out.push_str(&recorded);
     out.push('\n');
     let notes: Vec<&Problem> = answer.notes.iter().collect();
     out.push_str(&list("The river", &notes, false, system));
@@ -65,12 +84,48 @@ fn table(rows: &[PlaceRow]) -> String {
     out
 }
 
-/// The perturbed cases of a way at the dam, as time means.
-fn over_day(way: &Way) -> Spread {
-    way.at_dam()
+/// The release each place would need, the change in time for what is coming, the stage.
+fn needed(context: &Context, answer: &RiverAnswer, system: System) -> String {
+    let points = context.site().river.as_ref().map_or(&[][..], |r| &r.points);
+    let mut out = String::from("Release needed today\n");
+    if answer.windows.is_empty() {
+        out.push_str("  no rule is valid on this date\n");
+    }
+    for window in &answer.windows {
+        let name = window.point.and_then(|i| points.get(i)).map_or("the dam".to_owned(), |p| harmless(&p.name));
+        out.push_str(&wrapped(&format!("  {name}: {}", window_words(window, system)), 4));
+    }
+    for words in timely_words(context, answer, system) {
+        out.push_str(&wrapped(&format!("  ! {words}"), 4));
+    }
+    for (i, point) in points.iter().enumerate() {
+        if let Some(words) = stage_words(context, answer, i, system) {
+            out.push_str(&wrapped(&format!("  {}: {words}", harmless(&point.name)), 4));
+        }
+    }
+    out.push('\n');
+    out
 }
 
-/// Names of the places that rules speak of.
-pub fn point_words(point: &str) -> String {
-    harmless(point)
+/// Every rule valid on the date with how each release stands.
+fn standings(context: &Context, answer: &RiverAnswer, system: System) -> String {
+    let mut out = String::from("Rules\n");
+    let rows = rules(context, answer, system);
+    if rows.is_empty() {
+        out.push_str("  none is valid on this date\n");
+    }
+    for row in &rows {
+        let governs = if row.governs { ": governs" } else { "" };
+        out.push_str(&wrapped(&format!("  {} at {} ({}){governs}", row.name, row.point, row.asks), 4));
+        for standing in &row.standings {
+            let mark = if standing.missed { "!" } else { " " };
+            out.push_str(&wrapped(&format!("  {mark} {}", standing.words), 6));
+        }
+        out.push_str(&wrapped(&format!("    {}", row.source), 6));
+    }
+    for words in conflicts(context, answer, system) {
+        out.push_str(&wrapped(&format!("  ! {words}"), 4));
+    }
+    out.push('\n');
+    out
 }

@@ -7,7 +7,7 @@ use crate::tasks::Context;
 use crate::tasks::river::{RiverAnswer, Way, Which, Window};
 use crate::units::{Dimension, System, figure, show};
 
-use super::super::{length, oxygen, step, temperature};
+use super::super::{length, oxygen, temperature};
 
 /// A row of the table of places: a label, and a cell for the dam and for each point.
 #[derive(Debug, Clone, PartialEq)]
@@ -68,7 +68,7 @@ fn of_way(way: &Way, points: usize, system: System) -> Vec<PlaceRow> {
     let band = |band: Option<(f64, f64)>| {
         band.map(|(low, high)| format!("{} to {}", figure(low, unit, 1), figure(high, unit, 1)))
     };
-    let of_day = super::over_day(way);
+    let of_day = way.at_dam();
     let greatest = way.parts.iter().map(|p| p.release.temperature_c).fold(f64::NEG_INFINITY, f64::max);
     let mut out = vec![
         row("mean", temperature(way.temperature_c(), system), &|i| {
@@ -131,9 +131,4 @@ pub fn stage_words(context: &Context, answer: &RiverAnswer, point: usize, system
     });
     let words: Vec<String> = words.collect();
     (!words.is_empty()).then(|| words.join(", "))
-}
-
-/// A difference of temperature in the unit shown, such as `1.8 F`.
-pub(super) fn by(c: f64, system: System) -> String {
-    step(c, system)
 }

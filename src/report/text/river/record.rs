@@ -1,6 +1,6 @@
 //! What stations recorded, against the rules: days outside, by how much, and a calendar of them.
 
-use chrono::{Datelike, NaiveDate};
+use chrono::NaiveDate;
 
 use crate::problem::harmless;
 use crate::target::{Held, Mark, Standing, Tally, Target};
@@ -9,7 +9,7 @@ use crate::tasks::river::RiverAnswer;
 use crate::units::{Dimension, System};
 
 use super::super::wrapped_at;
-use super::rules::{asks, source};
+use super::rules::{asks, floor, source};
 
 /// What every statement about a record carries.
 pub const PROVISIONAL: &str = "from provisional data; not a compliance determination";
@@ -25,12 +25,8 @@ pub fn record(
     width: usize,
 ) -> Vec<(String, bool)> {
     let mut out = Vec::new();
-    let mut add = |text: &str, strong: bool| {
-        let lines = wrapped_at(text, 4, width);
-        out.extend(lines.lines().map(|line| (line.to_owned(), strong)));
-    };
     if answer.observed.is_empty() {
-        add("No station has recorded anything on days on which a rule is valid.", true);
+        say(&mut out, "No station has recorded anything on days on which a rule is valid.", width, true);
         return out;
     }
     for observed in &answer.observed {
@@ -38,30 +34,29 @@ pub fn record(
         let record = &observed.record;
         let parts = [
             (&record.temperature, asks(rule, system), unit(rule, system)),
-            (&record.oxygen, super::rules::floor(rule), ("mg/L".to_owned(), 1.0)),
-            (&record.oxygen_share, super::rules::floor(rule), ("% of saturation".to_owned(), 100.0)),
+            (&record.oxygen, floor(rule), ("mg/L".to_owned(), 1.0)),
+            (&record.oxygen_share, floor(rule), ("% of saturation".to_owned(), 100.0)),
         ];
         for (held, asked, unit) in parts {
             let Some(held) = held else { continue };
             let place = harmless(&rule.point);
-            add(&format!("{} at {place}: {asked}", harmless(&rule.name)), true);
-            add(&format!("  {}; {PROVISIONAL}", tally(&held.all, &unit)), false);
+            say(&mut out, &format!("{} at {place}: {asked}", harmless(&rule.name)), width, true);
+            say(&mut out, &format!("  {}; {PROVISIONAL}", tally(&held.all, &unit)), width, false);
             if held.seasons.len() > 1 {
                 for (year, season) in &held.seasons {
-                    add(&format!("  season of {year}: {}", tally(season, &unit)), false);
+                    say(&mut out, &format!("  season of {year}: {}", tally(season, &unit)), width, false);
                 }
             }
-            for line in calendar(held) {
-                out_line(&mut add, &line);
-            }
-            add(&format!("  {}", source(rule)), false);
+            out.extend(calendar(held).into_iter().map(|line| (line, false)));
+            say(&mut out, &format!("  {}", source(rule)), width, false);
         }
     }
     out
 }
 
-fn out_line(add: &mut impl FnMut(&str, bool), line: &str) {
-    add(line, false);
+/// Adds words, wrapped.
+fn say(out: &mut Vec<(String, bool)>, text: &str, width: usize, strong: bool) {
+    out.extend(wrapped_at(text, 4, width).lines().map(|line| (line.to_owned(), strong)));
 }
 
 /// The unit of a rule's values with what a value is multiplied by.
@@ -120,9 +115,4 @@ fn sign(mark: Mark) -> char {
         Standing::Below => 'v',
         Standing::Unknown => '?',
     }
-}
-
-/// The last day of a record, for its head.
-pub(super) fn last_day(held: &Held) -> Option<NaiveDate> {
-    held.days.last().map(|d| d.0).filter(|d| d.year() > 0)
 }

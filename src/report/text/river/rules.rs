@@ -72,6 +72,12 @@ pub fn rules(context: &Context, answer: &RiverAnswer, system: System) -> Vec<Rul
     spoken.targets.iter().filter_map(row).collect()
 }
 
+/// Rules that leave no release in common.
+pub fn conflicts(context: &Context, answer: &RiverAnswer, system: System) -> Vec<String> {
+    let told = answer.conflicts.iter().map(|c| c.problem(context.site()).advice(system));
+    told.collect()
+}
+
 /// What a rule asks, with its statistic.
 pub(super) fn asks(rule: &Target, system: System) -> String {
     format!("{}, {}", rule.statistic.name().replace('_', " "), range(rule, system))
