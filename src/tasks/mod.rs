@@ -25,6 +25,7 @@ mod day;
 mod mix;
 mod pool;
 pub mod rank;
+pub mod river;
 mod setting;
 mod since;
 mod solve;
@@ -50,6 +51,17 @@ pub enum Failure {
     Stopped,
     /// It can, but the files, or the files with these numbers, give no answer; with the units to say it in.
     Refused(Vec<Problem>, System),
+}
+
+impl Failure {
+    /// Why, in one sentence; quantities as [`say`](crate::units::say) marks them.
+    pub fn words(&self) -> String {
+        match self {
+            Self::Usage(words) => words.clone(),
+            Self::Stopped => "stopped".to_owned(),
+            Self::Refused(problems, _) => problems.first().map_or_else(String::new, |p| p.words.clone()),
+        }
+    }
 }
 
 /// The answer of `check`: everything said of a site folder, and the units to say it in.

@@ -2,6 +2,8 @@
 
 mod rank;
 mod rank_shape;
+mod river;
+mod river_record;
 mod shape;
 
 use std::collections::BTreeMap;
@@ -26,6 +28,7 @@ use shape::{
 use super::sentence::{METHOD, caution};
 
 pub use rank::rank;
+pub use river::river;
 
 /// The answer of `mix`.
 pub fn mix(context: &Context, answer: &MixAnswer) -> String {

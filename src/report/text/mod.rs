@@ -4,6 +4,7 @@ mod gates;
 mod mix;
 mod pool;
 pub mod rank;
+pub mod river;
 
 use std::fmt::Write as _;
 
@@ -11,6 +12,7 @@ use unicode_width::UnicodeWidthStr;
 
 use crate::problem::{Problem, Weight, harmless};
 use crate::tasks::rank::RankAnswer;
+use crate::tasks::river::RiverAnswer;
 use crate::tasks::{Context, Freshness, MixAnswer, PoolAnswer};
 use crate::units::{Dimension, System, show};
 
@@ -58,6 +60,14 @@ pub fn mix(context: &Context, answer: &MixAnswer) -> String {
 pub fn rank(context: &Context, answer: &RankAnswer) -> String {
     let mut out = head(context, &context.fingerprint);
     out.push_str(&rank::body(context, answer));
+    out.push_str(&wrapped(caution(), 0));
+    out
+}
+
+/// The answer of `river`.
+pub fn river(context: &Context, answer: &RiverAnswer) -> String {
+    let mut out = head(context, &context.fingerprint);
+    out.push_str(&river::body(context, answer));
     out.push_str(&wrapped(caution(), 0));
     out
 }
