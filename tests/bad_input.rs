@@ -20,6 +20,8 @@ mod mutated;
 mod settings;
 #[path = "bad_input/site.rs"]
 mod site;
+#[path = "bad_input/station.rs"]
+mod station;
 #[path = "bad_input/table.rs"]
 mod table;
 #[path = "bad_input/text.rs"]

@@ -4,13 +4,14 @@ mod clock;
 mod column;
 mod faults;
 mod gather;
+mod range;
 
 use chrono::{DateTime, FixedOffset};
 
 use crate::problem::{Problem, any_refused};
 use crate::series::{Record, Series};
 use crate::site::Site;
-use crate::units::{Dimension, Unit, say};
+use crate::units::Unit;
 use crate::water;
 
 use super::cast::is_sentinel;
@@ -21,13 +22,6 @@ use column::{MARK_CURE, provisional};
 use gather::Gather;
 
 pub use column::Column;
-
-/// Liquid water, C; what lies outside is left out (choice, as for casts).
-const WATER_C: std::ops::RangeInclusive<f64> = -1.0..=45.0;
-/// Most oxygen a reading can be of, mg/L and percent; more is left out (choice, as for casts).
-const OXYGEN_MOST: (f64, f64) = (40.0, 500.0);
-/// Oxygen that is kept and flagged, mg/L and percent (choice).
-const OXYGEN_HIGH: (f64, f64) = (20.0, 200.0);
 
 const TIME_CURE: &str = "write 2026-07-01T10:00 (standard time of the site) or 2026-07-01T10:00:00-07:00, and a time on every row";
 
@@ -102,10 +96,10 @@ fn read(source: &Source, site: &Site, problems: &mut Vec<Problem>) -> Option<Rec
     let row =
         |p: clock::Placed| Some(Row { line: p.line, time: p.time, reading: readings.get(p.row).copied()? });
     let mut rows: Vec<Row> = placed.into_iter().filter_map(row).collect();
-    in_range(&mut rows, &mut said);
+    range::in_range(&mut rows, &mut said);
     faults::faults(&mut rows, &mut said);
     problems.extend(said.finish());
-    if rows.iter().all(|r| r.reading.is_empty()) {
+    if rows.iter().all(|r| r.reading.is_empty()) && !any_refused(problems) {
         let cure = "check the columns and their units against docs/files.md";
         problems.push(Problem::refused(
             "no-reading-left",
@@ -237,53 +231,6 @@ fn mark(cell: &str, line: usize, said: &mut Gather) -> Option<bool> {
         said.add("mark", Problem::flag("mark", words, MARK_CURE).on_line(line));
     }
     of.or(Some(true))
-}
-
-/// Takes out what no river can be, and flags what hardly any is.
-fn in_range(rows: &mut [Row], said: &mut Gather) {
-    let outside = |row: &&Row| row.reading.temperature_c.is_some_and(|t| !WATER_C.contains(&t));
-    let (all, wrong) =
-        (rows.iter().filter(|r| r.reading.temperature_c.is_some()).count(), rows.iter().filter(outside));
-    let most = wrong.count() * 2 > all;
-    for row in rows {
-        let reading = &mut row.reading;
-        let mut out = |kind: &'static str, words: String, cure: &str| {
-            let problem = if most && kind == "temperature-range" {
-                let words = format!("{words}, and so are most others");
-                Problem::refused(kind, words, "check the unit in the header")
-            } else {
-                Problem::flag(kind, format!("{words}; it is left out"), cure)
-            };
-            said.add(kind, problem.on_line(row.line));
-        };
-        let blank = "blank the cell, or correct it";
-        if let Some(t) = reading.temperature_c.take_if(|t| !WATER_C.contains(t)) {
-            let words = format!(
-                "the temperature {} is outside {} to {}",
-                say::c(t, 1),
-                say::c(*WATER_C.start(), 0),
-                say::c(*WATER_C.end(), 0)
-            );
-            out("temperature-range", words, blank);
-        }
-        if let Some(o) = reading.oxygen_mg_l.take_if(|o| !(0.0..=OXYGEN_MOST.0).contains(o)) {
-            out("oxygen-range", format!("oxygen of {o} mg/L is outside 0 to {}", OXYGEN_MOST.0), blank);
-        }
-        if let Some(o) = reading.oxygen_percent.take_if(|o| !(0.0..=OXYGEN_MOST.1).contains(o)) {
-            out("oxygen-range", format!("oxygen of {o} % is outside 0 to {}", OXYGEN_MOST.1), blank);
-        }
-        let flows = |q: &f64| *q >= 0.0 && Dimension::Flow.is_plausible(*q);
-        if let Some(q) = reading.flow_m3s.take_if(|q| !flows(q)) {
-            out("flow-range", format!("a flow of {} is none of a river", say::m3s(q, 1)), blank);
-        }
-        let high = reading.oxygen_mg_l.is_some_and(|o| o > OXYGEN_HIGH.0)
-            || reading.oxygen_percent.is_some_and(|o| o > OXYGEN_HIGH.1);
-        if high {
-            let words = format!("oxygen is above {} mg/L or {} %; it is kept", OXYGEN_HIGH.0, OXYGEN_HIGH.1);
-            let cure = "check the sensor and the unit";
-            said.add("oxygen-high", Problem::flag("oxygen-high", words, cure).on_line(row.line));
-        }
-    }
 }
 
 /// Rows into series. Saturation is that of fresh water at the altitude of the bed at the dam: the river's own is not

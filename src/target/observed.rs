@@ -70,10 +70,12 @@ impl Target {
     ///
     /// # References
     /// The statistics are those of [`Statistic`]; a rule that allows some days is outside on the days beyond those
-    /// allowed whose own maximum lies above (choice).
+    /// allowed whose own maximum lies above; it counts from where its span or the record began (choice).
     pub fn observed_on(&self, days: &Days, date: NaiveDate, coverage: Coverage) -> Mark {
         let day = days.on(date);
-        let begin = self.span.began(date);
+        // what came before the record is not known, and not held against it
+        let began = days.days.keys().next().copied().unwrap_or(date);
+        let begin = self.span.began(date).max(began);
         match self.statistic {
             Statistic::Instantaneous => day.map_or(Mark::UNKNOWN, |day| {
                 let (least, greatest) = (self.against(Some(day.min)), self.against(Some(day.max)));

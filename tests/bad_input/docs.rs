@@ -6,6 +6,7 @@ use std::fs;
 use gatemix::files::cast::Column;
 use gatemix::files::folder::{Folder, check};
 use gatemix::files::site::site;
+use gatemix::files::station;
 use gatemix::files::yaml::{Document, Node};
 use gatemix::problem::any_refused;
 use serde_yaml::Value;
@@ -67,27 +68,44 @@ fn code(cell: &'static str) -> Option<&'static str> {
     cell.strip_prefix('`')?.strip_suffix('`').filter(|inner| !inner.contains('`'))
 }
 
+fn folder_of(site: &str, casts: &[(String, String)]) -> tempfile::TempDir {
+    let folder = tempfile::tempdir().unwrap();
+    fs::write(folder.path().join("site.yaml"), site).unwrap();
+    fs::create_dir(folder.path().join("profiles")).unwrap();
+    for (name, text) in casts {
+        fs::write(folder.path().join("profiles").join(name), text).unwrap();
+    }
+    folder
+}
+
 #[test]
 fn scenario_every_example_of_the_files_reference_is_accepted() {
     let mut folders: Vec<(String, Vec<(String, String)>)> = Vec::new();
+    let mut records = Vec::new();
     for (words, text) in fences() {
         match words.split(' ').collect::<Vec<_>>()[..] {
             ["yaml", "site"] => folders.push((text, Vec::new())),
             // a cast belongs to the site above it
             ["csv", "cast", name] => folders.last_mut().unwrap().1.push((name.into(), text)),
+            ["csv", "record", _] => records.push(text),
             ["text"] => {}
             _ => panic!("unknown kind of example: {words}"),
         }
     }
+    assert!(records.len() >= 2);
+    for text in records {
+        // a record is that of any site
+        let site = folders.first().unwrap().0.clone();
+        let folder = folder_of(&site, &[]);
+        fs::write(folder.path().join("tailwater.csv"), text).unwrap();
+        let folder = Folder::open(folder.path().to_str().unwrap()).unwrap();
+        assert_eq!(said(&folder.around().problems).iter().filter(|p| !p.contains("note:")).count(), 0);
+        assert!(folder.conditions().observed.contains_key("dam"));
+    }
     let count = (folders.len(), folders.iter().map(|f| f.1.len()).sum::<usize>());
     assert!(count.0 >= 2 && count.1 >= 3, "{count:?}");
     for (site, casts) in folders {
-        let folder = tempfile::tempdir().unwrap();
-        fs::write(folder.path().join("site.yaml"), site).unwrap();
-        fs::create_dir(folder.path().join("profiles")).unwrap();
-        for (name, text) in &casts {
-            fs::write(folder.path().join("profiles").join(name), text).unwrap();
-        }
+        let folder = folder_of(&site, &casts);
         let named = folder.path().to_str().unwrap();
         let (found, _) = check(named);
         assert!(!any_refused(&found), "{:#?}", said(&found));
@@ -233,4 +251,16 @@ fn law_the_defaults_of_the_files_reference_are_those_of_the_reader() {
     }
     assert!(count > 30, "{count}");
     assert_eq!(read(&bare), read(&spelled));
+}
+
+#[test]
+fn law_the_files_reference_names_every_column_of_a_record_and_shows_it() {
+    let told: Vec<&str> = rows("column of a record").iter().map(|cells| cells[0]).collect();
+    let columns: Vec<&str> = station::Column::ALL.iter().map(|column| column.name()).collect();
+    assert_eq!(told, columns);
+    let records: String =
+        fences().into_iter().filter(|(words, _)| words.starts_with("csv record")).map(|(_, t)| t).collect();
+    for word in columns.into_iter().chain(["# data: ", "# daylight: "]) {
+        assert!(records.contains(word), "{word} stands in no example");
+    }
 }

@@ -19,7 +19,7 @@ use proptest::test_runner::FileFailurePersistence;
 const SITE: &str = include_str!("../../sites/ashlar/site.yaml");
 const CAST: &str = include_str!("../../sites/ashlar/profiles/2026-07-14.csv");
 
-fn config(cases: u32) -> ProptestConfig {
+pub(super) fn config(cases: u32) -> ProptestConfig {
     let kept = FileFailurePersistence::Direct("tests/bad_input/found.txt");
     ProptestConfig { cases, failure_persistence: Some(Box::new(kept)), ..ProptestConfig::default() }
 }

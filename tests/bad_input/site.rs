@@ -141,6 +141,8 @@ const REFUSED: &[Case] = &[
     ("cast: 0.2", "cast: -0.2", "negative", "band.cast", "cannot be negative"),
     ("gap: 10", "gap: 0", "not-positive", "checks.gap", "above zero"),
     ("solids_density: 2650", "solids_density: 900", "solids", "water.solids_density", "denser than water"),
+    ("cold_water: [12]", "coverage: { hours: 25 }", "coverage", "coverage.hours", "hours must be 1 to 24"),
+    ("cold_water: [12]", "coverage: { days: 0 }", "coverage", "coverage.days", "days must be 1 to 7"),
     ("cold_water: [12]", "columns: { Temp: heat }", "column", "columns.Temp", "`heat` is not a column"),
     ("cold_water: [12]", "casts: [ { file: a.csv, taken: someday } ]", "time", "casts[0].taken", "someday"),
 ];

@@ -5,8 +5,10 @@
 
 mod layering;
 mod mix;
+mod observed;
 mod pool;
 mod rejected;
+mod series;
 mod table;
 mod targets;
 mod units;
