@@ -124,7 +124,7 @@ impl Pool<'_> {
     /// Takes a slice in and gives the mean of what leaves meanwhile.
     fn through(&mut self, slice: &Slice) -> Water {
         let volume = self.bay.volume_m3 * self.bay.mixed;
-        let steps = (1..).find(|n| slice.hours / f64::from(*n) <= STEP_H).unwrap_or(1);
+        let steps = (1..24).find(|n| slice.hours / f64::from(*n) <= STEP_H).unwrap_or(24);
         let step_s = slice.hours * HOUR_S / f64::from(steps);
         let entering = slice.water;
         let refill = entering.flow_m3s / volume;

@@ -174,21 +174,17 @@ impl<'a> Run<'a> {
         let Some(stream) = reach.inflows.get(place.1) else { return water };
         let Some(at) = self.time(clock_h) else { return water };
         let record = self.conditions.streams.get(&stream.name);
-        match brought(stream, record, at, self.by_hour) {
-            Some(brought) => {
-                if brought.held && !met.held.contains(&place) {
-                    met.held.push(place);
-                }
-                met.no_oxygen |= brought.water.oxygen_mg_l.is_none();
-                water.with(brought.water)
+        let Some(brought) = brought(stream, record, at, self.by_hour) else {
+            if !met.unknown.contains(&place) {
+                met.unknown.push(place);
             }
-            None => {
-                if !met.unknown.contains(&place) {
-                    met.unknown.push(place);
-                }
-                water
-            }
+            return water;
+        };
+        if brought.held && !met.held.contains(&place) {
+            met.held.push(place);
         }
+        met.no_oxygen |= brought.water.oxygen_mg_l.is_none();
+        water.with(brought.water)
     }
 
     fn seeping(&self, reach: &Reach) -> Option<Seeping> {

@@ -48,10 +48,9 @@ impl Dimension {
     pub fn is_plausible(self, value_si: f64) -> bool {
         let most = match self {
             Self::Length => 1e5,
-            Self::Distance => 1e7,
             Self::Area => 1e12,
             Self::Volume => 1e15,
-            Self::Flow => 1e7,
+            Self::Distance | Self::Flow => 1e7,
             Self::Velocity | Self::Temperature => 1e3,
             Self::TemperatureDifference => 1e2,
             Self::Concentration => 1e6,

@@ -49,11 +49,11 @@ fn described(read: &In, map: &Map) -> RawRiver {
 fn monthly(read: &In, map: &Map) -> RawMonthly {
     RawMonthly {
         air_c: months(map, "air", |v| read.quantity(v, Dimension::Temperature)),
-        humidity: yearly(read, map, "humidity", Dimension::Percent).map(hundredth),
+        humidity: shares(read, map, "humidity"),
         dew_point_c: yearly(read, map, "dew_point", Dimension::Temperature),
         wind_m_s: months(map, "wind", |v| read.quantity(v, Dimension::Velocity)),
         wind_height_m: read.optional(map, "wind_height", Dimension::Length),
-        cloud: yearly(read, map, "cloud", Dimension::Percent).map(hundredth),
+        cloud: shares(read, map, "cloud"),
         radiation_w_m2: figures(map, "radiation_w_m2", plain),
         sunshine_h: figures(map, "sunshine_h", plain),
     }
@@ -179,11 +179,9 @@ fn twelve(value: &Value, one: impl Fn(&Value) -> Option<f64>) -> Option<Yearly> 
     twelve?.ok().map(Yearly::Monthly)
 }
 
-fn hundredth(percent: Yearly) -> Yearly {
-    match percent {
-        Yearly::Constant(value) => Yearly::Constant(value / 100.0),
-        Yearly::Monthly(values) => Yearly::Monthly(values.map(|v| v / 100.0)),
-    }
+/// Percent as shares of 1.
+fn shares(read: &In, map: &Map, key: &'static str) -> Option<Yearly> {
+    figures(map, key, |v| read.quantity(v, Dimension::Percent).map(|percent| percent / 100.0))
 }
 
 fn plain(value: &Value) -> Option<f64> {

@@ -24,7 +24,7 @@ pub(super) fn river(raw: &Raw, problems: &mut Vec<Problem>) -> Option<River> {
         return None;
     }
     let reaches = reaches::reaches(river, problems);
-    let surface = surface(river, problems);
+    let surface = surface(raw, river, problems);
     let afterbay = river.afterbay.and_then(|a| {
         let at = |key: &str| format!("river.afterbay.{key}");
         positive(a.volume_m3, at("volume"), "volume", problems);
@@ -90,7 +90,7 @@ fn point(p: &RawPoint, i: usize, end_m: Option<f64>, problems: &mut Vec<Problem>
 }
 
 /// What trades heat with the river: a weather file before months, months before a given equilibrium.
-fn surface(river: &RawRiver, problems: &mut Vec<Problem>) -> Option<Surface> {
+fn surface(raw: &Raw, river: &RawRiver, problems: &mut Vec<Problem>) -> Option<Surface> {
     let given = match (&river.equilibrium_c, &river.exchange_w_m2_c) {
         (Some(equilibrium_c), Some(exchange_w_m2_c)) => Some(Surface::Given {
             equilibrium_c: equilibrium_c.clone(),
@@ -119,7 +119,7 @@ fn surface(river: &RawRiver, problems: &mut Vec<Problem>) -> Option<Surface> {
         let at = "river.exchange_w_m2_c".to_owned();
         positive(Some(0.0), at, "exchange_w_m2_c", problems);
     }
-    let months = river.monthly.as_ref().and_then(|m| super::months::air(m, problems));
+    let months = river.monthly.as_ref().and_then(|m| super::months::air(m, raw, problems));
     let all = [river.weather.is_some(), river.monthly.is_some(), given.is_some()];
     if all.iter().filter(|is| **is).count() > 1 {
         let used = if river.weather.is_some() { "the weather file" } else { "the monthly weather" };
