@@ -9,7 +9,7 @@ use chrono::{Datelike, NaiveDate};
 use crate::series::{Coverage, Daily, Day, Days, exceeds};
 
 use super::tally::{Held, Mark, held};
-use super::{OxygenStatistic, Span, Standing, Statistic, Target, YearDay};
+use super::{OxygenStatistic, Standing, Statistic, Target, YearDay};
 
 /// A record held against a rule.
 #[derive(Debug, Clone, Default, PartialEq)]
@@ -75,7 +75,7 @@ impl Target {
         let day = days.on(date);
         // what came before the record is not known, and not held against it
         let began = days.days.keys().next().copied().unwrap_or(date);
-        let begin = self.span.began(date).max(began);
+        let begin = self.span.began(date).unwrap_or(date).max(began);
         match self.statistic {
             Statistic::Instantaneous => day.map_or(Mark::UNKNOWN, |day| {
                 let (least, greatest) = (self.against(Some(day.min)), self.against(Some(day.max)));
@@ -176,13 +176,6 @@ fn beyond(day: Option<&Day>, high: f64, spent: Mark) -> Mark {
         None => Mark::UNKNOWN,
         Some(day) if exceeds(day.max, high) => spent,
         Some(_) => Mark { value: spent.value, standing: Standing::Inside, by: Some(0.0) },
-    }
-}
-
-impl Span {
-    /// The first day of the span that a date lies in.
-    pub fn began(&self, date: NaiveDate) -> NaiveDate {
-        self.from.last_before(date)
     }
 }
 

@@ -15,8 +15,8 @@ use crate::problem::Problem;
 use crate::tasks::rank::{RankAnswer, RankAsked, Shown, rank};
 use crate::tasks::river::downstream;
 use crate::tasks::{
-    Asked, Cast, Changed, Context, Failure, Given, MixAnswer, PoolAnswer, Solved, casts, mix, mix_given, open,
-    pool, preferred_c, solve,
+    Asked, Cast, Changed, Context, Failure, Given, MixAnswer, PoolAnswer, Solved, casts, mix, mix_given,
+    open, pool, preferred_c, solve,
 };
 use crate::units::System;
 

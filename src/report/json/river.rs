@@ -2,12 +2,13 @@
 
 use serde::Serialize;
 
-use crate::mix::TargetStanding;
+use crate::mix::{Spread, TargetStanding};
 use crate::target::DAM;
 use crate::tasks::Context;
 use crate::tasks::river::{Arriving, RiverAnswer, Timely, Way, Window};
 
-use super::shape::{Head, SettingJson, TargetJson, WarningJson};
+use super::shape::{Head, SettingJson, WarningJson};
+use super::targets::{ConflictJson, TargetJson};
 use super::{caution, head, setting, targets, warnings, written};
 
 /// Metres of a kilometre.
@@ -21,6 +22,7 @@ struct RiverJson {
     of: Option<&'static str>,
     points: Vec<PointJson>,
     release_window: Vec<WindowJson>,
+    conflicts: Vec<ConflictJson>,
     observed: Vec<super::river_record::ObservedJson>,
     releases: Vec<WayJson>,
     days: Vec<DayJson>,
@@ -132,6 +134,7 @@ pub fn river(context: &Context, answer: &RiverAnswer) -> String {
         of: spoken.map(|w| w.which.word()),
         points: spoken.map_or_else(Vec::new, |way| points(context, way)),
         release_window: answer.windows.iter().map(|w| window(context, w)).collect(),
+        conflicts: super::targets::conflicts(context.site(), answer.conflicts()),
         observed: super::river_record::observed(context, answer),
         releases: answer.ways.iter().map(|w| way(context, w)).collect(),
         days: answer.days.iter().map(|d| day(context, answer, d)).collect(),
@@ -197,8 +200,8 @@ fn points(context: &Context, way: &Way) -> Vec<PointJson> {
             temperature_min_c: figures.and_then(|f| Some(f.range_c?.1)),
             oxygen_mg_l: figures.and_then(|f| f.oxygen_mean_mg_l),
             oxygen_min_mg_l: figures.and_then(|f| f.oxygen_min_mg_l),
-            band_c: spread.and_then(|s| s.band_c()).map(<[f64; 2]>::from),
-            band_oxygen_mg_l: spread.and_then(|s| s.band_oxygen_mg_l()).map(<[f64; 2]>::from),
+            band_c: spread.and_then(Spread::band_c).map(<[f64; 2]>::from),
+            band_oxygen_mg_l: spread.and_then(Spread::band_oxygen_mg_l).map(<[f64; 2]>::from),
             targets: at(context, way, &p.name),
         }
     };

@@ -1,5 +1,7 @@
 //! The days ahead: what arrives if a release is held, and when a change must leave the dam to be in time.
 
+use std::sync::Arc;
+
 use chrono::{DateTime, FixedOffset, NaiveDate, TimeDelta};
 
 use crate::mix::Day;
@@ -66,9 +68,10 @@ pub(super) fn days(context: &Context, ways: &[Way]) -> Vec<Arriving> {
         };
         Arriving {
             date,
-            forecast: conditions.weather.forecast_from.is_some_and(|from| {
-                from.with_timezone(&site.offset).date_naive() <= date
-            }),
+            forecast: conditions
+                .weather
+                .forecast_from
+                .is_some_and(|from| from.with_timezone(&site.offset).date_naive() <= date),
             air_c: conditions.weather.day(date).map(|air| air.temperature_c),
             ways: ways.iter().map(figures).collect(),
         }
@@ -91,11 +94,13 @@ pub(super) fn timely(context: &Context, way: &Way) -> Vec<Timely> {
     // a point's days in a row that would be too warm, as found so far
     for date in dates(context) {
         let Some(course) = course(site, conditions, date, &way.released()) else { return out };
-        let rules = Day::new(site, date, conditions).rules(site);
+        let rules = Day::new(site, date, Arc::clone(&context.conditions)).rules(site);
         for there in &course.points {
             let worst = rules
                 .iter()
-                .filter(|r| r.point == Some(there.point) && site.targets.get(r.target).is_some_and(|t| !t.soft))
+                .filter(|r| {
+                    r.point == Some(there.point) && site.targets.get(r.target).is_some_and(|t| !t.soft)
+                })
                 .filter_map(|r| {
                     let today = r.today.as_ref().ok()?;
                     let figure = figure_c(&there.figures, today.figure)?;

@@ -5,12 +5,13 @@ mod asked;
 mod observed;
 mod way;
 
+use crate::mix::Conflict;
 use crate::problem::Problem;
 use crate::target::DAM;
 
 use super::rank::{RankAsked, Shown, rank};
-use crate::rank::Progress;
 use super::{Context, Failure, MixAnswer, Word, mix};
+use crate::rank::Progress;
 
 pub use ahead::{Arriving, Timely};
 pub use asked::Window;
@@ -35,6 +36,11 @@ pub struct RiverAnswer {
 }
 
 impl RiverAnswer {
+    /// Rules that leave no release in common.
+    pub fn conflicts(&self) -> &[Conflict] {
+        self.spoken().map_or(&[], |way| &way.conflicts)
+    }
+
     /// The way that is spoken of where only one can be: the one tried, else the one now, else the best.
     pub fn spoken(&self) -> Option<&Way> {
         let of = |which: Which| self.ways.iter().find(|w| w.which == which);
@@ -46,7 +52,12 @@ impl RiverAnswer {
 ///
 /// # Errors
 /// As [`mix`]; nothing set, nothing now and nothing ranked.
-pub fn river(context: &Context, words: &[Word], asked: &RankAsked, progress: Progress) -> Result<RiverAnswer, Failure> {
+pub fn river(
+    context: &Context,
+    words: &[Word],
+    asked: &RankAsked,
+    progress: Progress,
+) -> Result<RiverAnswer, Failure> {
     let tried = if words.is_empty() { None } else { Some(mix(context, words)?) };
     let now = match (&tried, mix(context, &[])) {
         (_, Ok(now)) => Ok(now),
@@ -101,8 +112,7 @@ pub fn downstream(
     if let Some(way) = answer.spoken() {
         let windows = asked::windows(context, way);
         let (days, timely) = (ahead::days(context, &answer.ways), ahead::timely(context, way));
-        let flags: Vec<Problem> =
-            way.course.iter().flat_map(|c| c.flags.iter().cloned()).collect();
+        let flags: Vec<Problem> = way.course.iter().flat_map(|c| c.flags.iter().cloned()).collect();
         answer.notes.extend(flags);
         (answer.windows, answer.days, answer.timely) = (windows, days, timely);
     }
@@ -116,12 +126,14 @@ fn notes(context: &Context) -> Vec<Problem> {
         let elsewhere = site.targets.iter().any(|t| t.point != DAM);
         let cure = "give `river:` its reaches and points in site.yaml";
         let words = "the site file tells nothing of the river below the dam";
-        let problem = if elsewhere { Problem::flag("no-river", words, cure) } else { Problem::note("no-river", words) };
+        let problem =
+            if elsewhere { Problem::flag("no-river", words, cure) } else { Problem::note("no-river", words) };
         return vec![problem];
     };
     if river.surface.is_none() {
         let cure = "give `river:` its weather, monthly figures, or equilibrium and exchange_w_m2_c";
-        let words = "what the river trades with the air is not given: temperatures below the dam are not known";
+        let words =
+            "what the river trades with the air is not given: temperatures below the dam are not known";
         return vec![Problem::flag("no-weather", words, cure)];
     }
     Vec::new()

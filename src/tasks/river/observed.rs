@@ -26,8 +26,9 @@ pub(super) fn observed(context: &Context) -> Vec<Observed> {
         let reference = rule.reference.as_ref().map(|r| reference_days(site, r, conditions, dates));
         let valid = |date| rule.valid_on(date, site.year_type.as_deref());
         let record = held(rule, &station, reference.as_ref(), site.coverage, valid);
-        let known = [&record.temperature, &record.oxygen, &record.oxygen_share];
-        known.into_iter().flatten().any(|h| !h.days.is_empty()).then_some(Observed { target, record })
+        let bounds = [&record.temperature, &record.oxygen, &record.oxygen_share];
+        let told = bounds.into_iter().flatten().any(|held| !held.days.is_empty());
+        told.then_some(Observed { target, record })
     };
     site.targets.iter().enumerate().filter_map(one).collect()
 }

@@ -1,6 +1,6 @@
 //! A release on its way down the river.
 
-use crate::mix::{Blend, Mix, Setting, Spread, TargetStanding};
+use crate::mix::{Blend, Conflict, Mix, Setting, Spread, TargetStanding};
 use crate::river::{Course, Link, Part, course, links};
 use crate::tasks::Context;
 use crate::tasks::MixAnswer;
@@ -53,6 +53,8 @@ pub struct Way {
     pub parts: Vec<WayPart>,
     /// Standing against every target valid on the date, at the dam and at every point.
     pub targets: Vec<TargetStanding>,
+    /// Rules that leave no release in common.
+    pub conflicts: Vec<Conflict>,
     /// What becomes of it; `None` where the site has no river or nothing is known of the air above it.
     pub course: Option<Course>,
     /// The perturbed cases at every point, as time means; empty without a course.
@@ -67,14 +69,14 @@ impl Way {
             Some(day) => day.blocks.iter().map(|b| (b.share, &b.setting, &b.mix)).collect(),
             None => vec![(1.0, &answer.setting, &answer.mix)],
         };
-        let targets = day.map_or(&answer.mix.targets, |day| &day.targets);
-        Self::new(context, which, &parts, targets)
+        let targets = day.map_or(&answer.mix.targets, |day| &day.held.targets);
+        Self::new(context, which, &parts, targets, &answer.mix.conflicts)
     }
 
     /// Of a ranked mix.
     pub(super) fn of_ranked(context: &Context, which: Which, shown: &Shown) -> Self {
         let parts: Vec<_> = shown.parts.iter().map(|p| (p.share, &p.setting, &p.mix)).collect();
-        Self::new(context, which, &parts, &shown.targets)
+        Self::new(context, which, &parts, &shown.targets, &shown.conflicts)
     }
 
     pub(super) fn new(
@@ -82,6 +84,7 @@ impl Way {
         which: Which,
         parts: &[(f64, &Setting, &Mix)],
         targets: &[TargetStanding],
+        conflicts: &[Conflict],
     ) -> Self {
         let parts: Vec<WayPart> = parts
             .iter()
@@ -95,7 +98,8 @@ impl Way {
         let (site, date) = (context.site(), context.on.date_naive());
         let course = course(site, &context.conditions, date, &released(&parts));
         let spreads = if course.is_some() { spreads(context, &parts) } else { Vec::new() };
-        Self { which, parts, targets: targets.to_vec(), course, spreads }
+        let (targets, conflicts) = (targets.to_vec(), conflicts.to_vec());
+        Self { which, parts, targets, conflicts, course, spreads }
     }
 
     /// The parts of the day as the river takes them.

@@ -1,7 +1,7 @@
 //! Pictures: pure drawing of plain data into a buffer; nothing here knows the model.
 
-mod boxed;
 pub mod along;
+mod boxed;
 pub mod column;
 pub mod gauge;
 mod pen;

@@ -15,7 +15,7 @@ use super::{flow, labelled, list, setting_words, wrapped};
 pub use ahead::{days, timely_words};
 pub use places::{PlaceRow, places, stage_words, window_words};
 pub use record::{PROVISIONAL, SIGNS, calendar, record};
-pub use rules::{EXAMPLE, RuleRow, RuleStanding, conflicts, rules};
+pub use rules::{RuleRow, RuleStanding, conflicts, rules};
 
 /// Columns of a label of the table of places, and of each place.
 const LABEL: usize = 20;
@@ -92,7 +92,8 @@ fn needed(context: &Context, answer: &RiverAnswer, system: System) -> String {
         out.push_str("  no rule is valid on this date\n");
     }
     for window in &answer.windows {
-        let name = window.point.and_then(|i| points.get(i)).map_or("the dam".to_owned(), |p| harmless(&p.name));
+        let name =
+            window.point.and_then(|i| points.get(i)).map_or("the dam".to_owned(), |p| harmless(&p.name));
         out.push_str(&wrapped(&format!("  {name}: {}", window_words(window, system)), 4));
     }
     for words in timely_words(context, answer, system) {

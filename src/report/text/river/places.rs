@@ -30,7 +30,9 @@ pub fn places(context: &Context, answer: &RiverAnswer, system: System) -> Vec<Pl
     let row = |label: &str, dam: &str, of: &dyn Fn(usize, &Point) -> String| PlaceRow {
         label: label.to_owned(),
         of: None,
-        cells: std::iter::once(dam.to_owned()).chain(points.iter().enumerate().map(|(i, p)| of(i, p))).collect(),
+        cells: std::iter::once(dam.to_owned())
+            .chain(points.iter().enumerate().map(|(i, p)| of(i, p)))
+            .collect(),
     };
     let mut out = vec![
         row("", "dam", &|i, p| format!("{} {}", i + 1, harmless(&p.name))),
@@ -38,12 +40,16 @@ pub fn places(context: &Context, answer: &RiverAnswer, system: System) -> Vec<Pl
     ];
     if let Some(course) = answer.spoken().and_then(|w| w.course.as_ref()) {
         let hours = |of: fn(&AtPoint) -> f64| {
-            move |i: usize, _: &Point| course.points.get(i).map_or_else(|| NONE.into(), |a| format!("{:.1} h", of(a)))
+            move |i: usize, _: &Point| {
+                course.points.get(i).map_or_else(|| NONE.into(), |a| format!("{:.1} h", of(a)))
+            }
         };
         out.push(row("water takes", NONE, &hours(|a| a.travel_h)));
         out.push(row("first rise possible", NONE, &hours(|a| a.rise_first_h)));
         out.push(row("bulk of a rise", NONE, &hours(|a| a.rise_h)));
-        out.push(row("warning time", NONE, &|_, p| p.warning_h.map_or_else(|| NONE.into(), |h| format!("{h:.1} h"))));
+        out.push(row("warning time", NONE, &|_, p| {
+            p.warning_h.map_or_else(|| NONE.into(), |h| format!("{h:.1} h"))
+        }));
     }
     for way in &answer.ways {
         out.extend(of_way(way, points.len(), system));
@@ -63,7 +69,9 @@ fn of_way(way: &Way, points: usize, system: System) -> Vec<PlaceRow> {
     let row = |what: &str, dam: String, of: &dyn Fn(usize) -> Option<String>| PlaceRow {
         label: format!("{name} {what}"),
         of: Some(way.which),
-        cells: std::iter::once(dam).chain((0..points).map(|i| of(i).unwrap_or_else(|| NONE.into()))).collect(),
+        cells: std::iter::once(dam)
+            .chain((0..points).map(|i| of(i).unwrap_or_else(|| NONE.into())))
+            .collect(),
     };
     let band = |band: Option<(f64, f64)>| {
         band.map(|(low, high)| format!("{} to {}", figure(low, unit, 1), figure(high, unit, 1)))

@@ -18,12 +18,7 @@ pub const PROVISIONAL: &str = "from provisional data; not a compliance determina
 pub const SIGNS: &str = ". inside  # above  v below  ? too little recorded";
 
 /// Lines about every record, wrapped at a width; the first of each rule is strong.
-pub fn record(
-    context: &Context,
-    answer: &RiverAnswer,
-    system: System,
-    width: usize,
-) -> Vec<(String, bool)> {
+pub fn record(context: &Context, answer: &RiverAnswer, system: System, width: usize) -> Vec<(String, bool)> {
     let mut out = Vec::new();
     if answer.observed.is_empty() {
         say(&mut out, "No station has recorded anything on days on which a rule is valid.", width, true);

@@ -5,12 +5,9 @@ use crate::problem::harmless;
 use crate::target::Target;
 use crate::tasks::Context;
 use crate::tasks::river::{RiverAnswer, Way};
-use crate::units::{Dimension, System, figure};
+use crate::units::{Dimension, System, figure, in_system};
 
-use super::super::mix::{range, standing_words};
-
-/// What an example is not.
-pub const EXAMPLE: &str = "example values, not your licence's";
+use super::super::targets::{EXAMPLE, range, standing_words, value_words};
 
 /// How one release stands against a rule.
 #[derive(Debug, Clone, PartialEq)]
@@ -52,8 +49,10 @@ pub fn rules(context: &Context, answer: &RiverAnswer, system: System) -> Vec<Rul
         let rule = site.targets.get(s.target)?;
         let of = |way: &Way| {
             let s = way.targets.iter().find(|t| t.target == s.target)?;
+            let value = value_words(s, rule, system).map_or_else(String::new, |v| format!("{v}, "));
+            let why = s.words.as_deref().map_or_else(String::new, |w| format!(" ({})", in_system(w, system)));
             Some(RuleStanding {
-                words: format!("{}: {}", way.which.word(), standing_words(s, rule, system)),
+                words: format!("{}: {value}{}{why}", way.which.word(), standing_words(s, rule, system)),
                 missed: s.missed(),
             })
         };
@@ -61,7 +60,7 @@ pub fn rules(context: &Context, answer: &RiverAnswer, system: System) -> Vec<Rul
             target: s.target,
             name: harmless(&rule.name),
             point: harmless(&rule.point),
-            statistic: rule.statistic.name().replace('_', " "),
+            statistic: in_system(&rule.statistic.words(), system),
             asks: asks(rule, system),
             cells: cells(rule, system),
             standings: answer.ways.iter().filter_map(of).collect(),
@@ -74,18 +73,18 @@ pub fn rules(context: &Context, answer: &RiverAnswer, system: System) -> Vec<Rul
 
 /// Rules that leave no release in common.
 pub fn conflicts(context: &Context, answer: &RiverAnswer, system: System) -> Vec<String> {
-    let told = answer.conflicts.iter().map(|c| c.problem(context.site()).advice(system));
+    let told = answer.conflicts().iter().map(|c| c.problem(context.site()).advice(system));
     told.collect()
 }
 
 /// What a rule asks, with its statistic.
 pub(super) fn asks(rule: &Target, system: System) -> String {
-    format!("{}, {}", rule.statistic.name().replace('_', " "), range(rule, system))
+    format!("{}, {}", in_system(&rule.statistic.words(), system), range(rule, system))
 }
 
 /// Its floor of oxygen.
 pub(super) fn floor(rule: &Target) -> String {
-    let statistic = rule.oxygen_statistic().name().replace('_', " ");
+    let statistic = rule.oxygen_statistic().words();
     match (rule.oxygen_min_mg_l, rule.oxygen_min_share) {
         (Some(least), _) => format!("{statistic} of oxygen at least {least:.1} mg/L"),
         (None, Some(share)) => format!("{statistic} of oxygen at least {:.0} % of saturation", 100.0 * share),

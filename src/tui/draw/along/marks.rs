@@ -18,7 +18,14 @@ pub(super) fn asked(picture: &AlongPicture, frame: &Frame, pen: &mut Pen, look: 
         bracket(picture, frame, pen, (col, &number, role), point.range, if ascii { "[" } else { "┃" });
         if let Some(window) = point.window {
             // windows of later points stand to the right of those of earlier ones
-            bracket(picture, frame, pen, (SIDE + 2 * i, &number, role), window, if ascii { "(" } else { "┋" });
+            bracket(
+                picture,
+                frame,
+                pen,
+                (SIDE + 2 * i, &number, role),
+                window,
+                if ascii { "(" } else { "┋" },
+            );
         }
     }
 }

@@ -11,7 +11,7 @@ use ratatui::layout::Rect;
 
 use crate::plot::{Dots, Stroke};
 use crate::tui::{Look, Role};
-use crate::units::{Dimension, System, figure};
+use crate::units::{Dimension, System};
 
 use super::pen::Pen;
 
@@ -126,7 +126,6 @@ impl AlongPicture {
     fn shown(&self, value: f64) -> f64 {
         self.system.unit(self.dimension).from_si(value)
     }
-
 
     /// Every value there is, asked for or not.
     fn values(&self) -> Vec<f64> {

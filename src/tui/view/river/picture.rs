@@ -49,7 +49,8 @@ fn ways(screen: &Screen, dimension: Dimension) -> Vec<AlongWay> {
         };
         // one band is enough to see how sure it is; three would hide the lines
         let banded = screen.down.answer.spoken().is_some_and(|spoken| spoken.which == way.which);
-        let bands = if banded { points.iter().zip(&way.spreads).filter_map(band).collect() } else { Vec::new() };
+        let bands =
+            if banded { points.iter().zip(&way.spreads).filter_map(band).collect() } else { Vec::new() };
         Some(AlongWay {
             letter,
             name: way.which.word().to_owned(),
