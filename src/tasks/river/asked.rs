@@ -1,9 +1,14 @@
 //! The release each point would need for its rules today.
 
-use crate::mix::RuleToday;
+use crate::mix::{RuleToday, saturation_below_mg_l};
+use crate::river::{self, Floor, Part, Wanted, course, least_oxygen};
+use crate::target::{Air, Figure, OxygenFigure, Today};
 use crate::tasks::Context;
 
 use super::Way;
+
+/// Ends of a window that cross by less still meet, C: round-off of a root.
+const NEAR_C: f64 = 1e-6;
 
 /// The release that keeps a point inside its rules today, as far as one does.
 #[derive(Debug, Clone, PartialEq)]
@@ -49,8 +54,7 @@ pub(super) fn windows(context: &Context, way: &Way) -> Vec<Window> {
 
 /// The window of a place under its rules.
 fn window(context: &Context, way: &Way, point: Option<usize>, rules: &[&RuleToday]) -> Window {
-    let _ = (context, way, rules);
-    Window {
+    let mut out = Window {
         point,
         low_c: None,
         high_c: None,
@@ -61,5 +65,155 @@ fn window(context: &Context, way: &Way, point: Option<usize>, rules: &[&RuleToda
         asked_c: [None, None],
         floor_mg_l: None,
         unknown: Vec::new(),
+    };
+    for rule in rules {
+        match &rule.today {
+            Ok(today) => out.narrow(rule.target, ends(context, way, point, today)),
+            Err(words) => out.unknown.push(words.clone()),
+        }
+        if let Some(air) = &rule.air {
+            out.raise(rule.target, air, floor(context, way, point, air));
+        }
     }
+    out.reachable &= out.low_c.zip(out.high_c).is_none_or(|(low, high)| low <= high + NEAR_C);
+    out.asked_c = asked(context, way, &out, rules);
+    if !out.reachable {
+        (out.low_c, out.high_c) = (None, None);
+    }
+    out.unknown.dedup();
+    out
+}
+
+impl Window {
+    /// Takes the releases in that a rule allows.
+    fn narrow(&mut self, target: usize, ends: Result<Ends, String>) {
+        let ends = match ends {
+            Ok(ends) => ends,
+            Err(words) => {
+                self.unknown.push(words);
+                return;
+            }
+        };
+        self.reachable &= ends.reachable;
+        if ends.step {
+            self.unknown.push("the point passes an end of its range in a step".to_owned());
+        }
+        if let Some(low) = ends.low_c.filter(|low| self.low_c.is_none_or(|l| *low > l)) {
+            (self.low_c, self.set_by[0]) = (Some(low), Some(target));
+        }
+        if let Some(high) = ends.high_c.filter(|high| self.high_c.is_none_or(|h| *high < h)) {
+            (self.high_c, self.set_by[1]) = (Some(high), Some(target));
+        }
+    }
+
+    /// Takes the oxygen in that a floor asks of the release.
+    fn raise(&mut self, target: usize, air: &Air, asked: Result<(f64, f64), String>) {
+        match asked {
+            Ok((least, floor)) => {
+                if self.oxygen_min_mg_l.is_none_or(|l| least > l) {
+                    (self.oxygen_min_mg_l, self.oxygen_set_by) = (Some(least), Some(target));
+                }
+                if !air.share {
+                    self.floor_mg_l = Some(self.floor_mg_l.map_or(floor, |f| f.max(floor)));
+                }
+            }
+            Err(words) => self.unknown.push(words),
+        }
+    }
+}
+
+/// Releases that a rule allows.
+struct Ends {
+    low_c: Option<f64>,
+    high_c: Option<f64>,
+    reachable: bool,
+    step: bool,
+}
+
+/// Releases that keep a place in what a rule asks of today.
+fn ends(context: &Context, way: &Way, point: Option<usize>, today: &Today) -> Result<Ends, String> {
+    let (low_c, high_c) = (today.low_c, today.high_c);
+    if low_c.is_none() && high_c.is_none() {
+        return Ok(Ends { low_c, high_c, reachable: true, step: false });
+    }
+    if today.figure == Figure::HourlyChange {
+        return Err("a change from hour to hour follows from no one release temperature".to_owned());
+    }
+    let Some(point) = point else { return Ok(Ends { low_c, high_c, reachable: true, step: false }) };
+    let there = way.course.as_ref().and_then(|c| c.points.iter().find(|p| p.point == point));
+    let Some(there) = there else { return Err("what arrives there is not known".to_owned()) };
+    if today.figure != Figure::Mean && there.figures.range_c.is_none() {
+        return Err("the greatest and least of its day need weather by the hour".to_owned());
+    }
+    // of every reading the greatest stays below the upper end and the least above the lower
+    let wanted = match today.figure {
+        Figure::Max => vec![(low_c, high_c, river::Figure::Greatest)],
+        Figure::Min => vec![(low_c, high_c, river::Figure::Least)],
+        Figure::Both => {
+            vec![(low_c, None, river::Figure::Least), (None, high_c, river::Figure::Greatest)]
+        }
+        _ => vec![(low_c, high_c, river::Figure::Mean)],
+    };
+    let mut out = Ends { low_c: None, high_c: None, reachable: true, step: false };
+    for (low_c, high_c, of) in wanted {
+        let wanted = Wanted { low_c, high_c, of };
+        let (site, conditions) = (context.site(), &context.conditions);
+        let found = river::window(site, conditions, context.on.date_naive(), &flows(way), point, wanted);
+        let Some(found) = found else { return Err("what arrives there is not known".to_owned()) };
+        out.low_c = out.low_c.or(found.low_c);
+        out.high_c = out.high_c.or(found.high_c);
+        out.reachable &= found.reachable;
+        out.step |= found.step;
+    }
+    Ok(out)
+}
+
+/// Hours and flows of the parts of the day.
+fn flows(way: &Way) -> Vec<(f64, f64)> {
+    way.released().iter().map(|p| (p.hours, p.flow_m3s)).collect()
+}
+
+/// Least oxygen of the release for a floor at a place, and the floor, both mg/L.
+fn floor(context: &Context, way: &Way, point: Option<usize>, air: &Air) -> Result<(f64, f64), String> {
+    let site = context.site();
+    let release_c = way.temperature_c();
+    let Some(point) = point else {
+        let salt = way.parts.first().map_or(0.0, |p| p.release.salt_g_per_kg);
+        let floor = air.floor_mg_l(saturation_below_mg_l(site, release_c, salt));
+        return Ok((floor, floor));
+    };
+    let floor = match (air.figure, air.share) {
+        (OxygenFigure::Mean, false) => Floor::Mean(air.floor),
+        (OxygenFigure::Mean, true) => Floor::MeanShare(air.floor),
+        (OxygenFigure::Min, false) => Floor::Least(air.floor),
+        (OxygenFigure::Min, true) => Floor::LeastShare(air.floor),
+    };
+    let (conditions, date) = (&context.conditions, context.on.date_naive());
+    let found = least_oxygen(site, conditions, date, &flows(way), (point, release_c), floor);
+    match found.map(|f| f.least_mg_l) {
+        Some(Some(least)) => Ok((least, air.floor)),
+        Some(None) => Err("no oxygen of the release keeps its floor".to_owned()),
+        None => Err("the oxygen there is not known".to_owned()),
+    }
+}
+
+/// What a place asks of its own mean temperature today, C: at a point the mean that goes with the ends of the window.
+fn asked(context: &Context, way: &Way, window: &Window, rules: &[&RuleToday]) -> [Option<f64>; 2] {
+    let of_means = |end: fn(&Today) -> Option<f64>, stricter: fn(f64, f64) -> f64| {
+        let means = rules.iter().filter_map(|r| r.today.as_ref().ok()).filter(|t| t.figure == Figure::Mean);
+        means.filter_map(end).reduce(stricter)
+    };
+    let Some(point) = window.point.filter(|_| window.reachable) else {
+        return [of_means(|t| t.low_c, f64::max), of_means(|t| t.high_c, f64::min)];
+    };
+    let mean_c = |release_c: f64| {
+        let parts: Vec<Part> = way
+            .released()
+            .into_iter()
+            .map(|part| Part { temperature_c: release_c, ..part })
+            .collect();
+        let there = course(context.site(), &context.conditions, context.on.date_naive(), &parts)?;
+        Some(there.points.iter().find(|p| p.point == point)?.figures.mean_c)
+    };
+    [window.low_c.and_then(mean_c), window.high_c.and_then(mean_c)]
 }
