@@ -8,6 +8,7 @@ mod mix;
 mod observed;
 mod pool;
 mod rejected;
+mod river;
 mod series;
 mod table;
 mod targets;

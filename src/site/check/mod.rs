@@ -1,8 +1,11 @@
 //! From raw to checked site: every problem at once, each at its path.
 
 mod limits;
+mod months;
 mod operation;
 mod outlets;
+mod reaches;
+mod river;
 mod rules;
 
 use std::collections::HashMap;
@@ -51,6 +54,8 @@ impl Site {
             );
         }
         outlets::mixed_losses(raw, &mut problems);
+        let river = river::river(raw, &mut problems);
+        river::points_of_targets(raw, &mut problems);
         let release = limits::release(raw, &mut problems);
         limits::blocks(&raw.blocks, &mut problems);
         let limits = limits::limits(raw, pool.as_ref(), &mut problems);
@@ -66,7 +71,7 @@ impl Site {
             Some(Self {
                 name: raw.name.clone()?,
                 river_name: raw.river_name.clone(),
-                river: None,
+                river,
                 year_type: None,
                 events: Vec::new(),
                 coverage: raw.coverage,

@@ -46,12 +46,6 @@ pub(super) fn target(t: &RawTarget, i: usize, problems: &mut Vec<Problem>) -> Op
         }
     };
     let point = t.point.clone().unwrap_or_else(|| "dam".into());
-    if point != "dam" {
-        problems.push(
-            Problem::refused("unknown-point", format!("no point is named `{point}`"), "use `dam`")
-                .at(format!("{path}.point")),
-        );
-    }
     let built = Target {
         name: t.name.clone()?,
         span: Span { from: from?, to: to? },
