@@ -155,13 +155,11 @@ fn data(table: &Table, problems: &mut Vec<Problem>) -> bool {
     let mut usual = true;
     for (_, value, line) in table.meta().filter(|m| m.0 == "data") {
         let short: String = value.chars().take(30).collect();
-        match provisional(&short) {
-            Some(of) => usual = of,
-            None => {
-                let words =
-                    format!("`# data: {short}` is not a word known here; the data count as provisional");
-                problems.push(Problem::flag("mark", words, MARK_CURE).on_line(line));
-            }
+        let of = provisional(&short);
+        usual = of.unwrap_or(true);
+        if of.is_none() {
+            let words = format!("`# data: {short}` is not a word known here; the data count as provisional");
+            problems.push(Problem::flag("mark", words, MARK_CURE).on_line(line));
         }
     }
     usual

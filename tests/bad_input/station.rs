@@ -1,5 +1,7 @@
 //! The reader of stations: what it reads, what it says of odd files, and that nothing makes it panic.
 
+use std::fmt::Write as _;
+
 use chrono::{DateTime, FixedOffset};
 use gatemix::files::site::site;
 use gatemix::files::station::station;
@@ -52,7 +54,7 @@ fn rows(days: u32, minutes: u32, of: impl Fn(u32, f64) -> f64) -> String {
             let (hour, minute) = (step * minutes / 60, step * minutes % 60);
             let value = of(day, f64::from(step * minutes) / 60.0);
             let day = day + 1;
-            out += &format!("2026-07-{day:02}T{hour:02}:{minute:02},{value:.2},9.0{}\n", step % 2);
+            _ = writeln!(out, "2026-07-{day:02}T{hour:02}:{minute:02},{value:.2},9.0{}", step % 2);
         }
     }
     out
@@ -300,7 +302,7 @@ fn scenario_readings_no_river_has_are_left_out_and_told() {
 fn scenario_cells_that_cannot_be_read_are_all_told_with_their_lines() {
     let mut text = String::from("time,temperature_C,oxygen_mg_l\n2026-07-01,10,8\nyesterday,10,8\n");
     for minute in 10..20 {
-        text += &format!("2026-07-01T10:{minute},ice,{minute}\n");
+        _ = writeln!(text, "2026-07-01T10:{minute},ice,{minute}");
     }
     let (none, problems) = read(&text);
     assert!(none.is_none());

@@ -11,6 +11,7 @@ mod pool;
 mod rejected;
 mod river;
 mod series;
+mod series_pandas;
 mod table;
 mod targets;
 mod units;

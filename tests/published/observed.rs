@@ -7,6 +7,8 @@ use gatemix::target::{
     DAM, Held, Observed, OxygenStatistic, Reference, Span, Standing, Statistic, Target, YearDay, observed,
 };
 
+use Standing::{Above, Inside, Unknown};
+
 use super::series::{date, days};
 
 fn rule(statistic: Statistic, low_c: Option<f64>, high_c: Option<f64>) -> Target {
@@ -32,8 +34,8 @@ fn figures(held: &Held) -> (u32, u32, u32, u32, Option<(f64, String)>) {
     (all.over, all.under, all.unknown, all.longest_run, worst)
 }
 
-fn worst(by: f64, day: &str) -> Option<(f64, String)> {
-    Some((by, day.to_owned()))
+fn worst(by: f64, day: &str) -> (f64, String) {
+    (by, day.to_owned())
 }
 
 const V: fn(f64) -> Option<f64> = Some;
@@ -43,20 +45,19 @@ fn published_days_over_by_how_much_and_the_longest_run() {
     // maxima against 18: +1, +2.5, +1, inside, +1, no day, +1, on the bound
     let maxima = [V(19.0), V(20.5), V(19.0), V(17.0), V(19.0), None, V(19.0), V(18.0)];
     let of = held(&rule(Statistic::DailyMax, None, Some(18.0)), days("2026-07-01", &maxima));
-    assert_eq!(figures(&of), (5, 0, 1, 3, worst(2.5, "2026-07-02")));
+    assert_eq!(figures(&of), (5, 0, 1, 3, Some(worst(2.5, "2026-07-02"))));
     assert_eq!((of.all.judged, of.days.len()), (7, 8));
     assert_abs_diff_eq!(of.all.sum_outside, 6.5, epsilon = 1e-12);
     let marks: Vec<Standing> = of.days.iter().map(|d| d.1.standing).collect();
-    use Standing::{Above as A, Inside as I, Unknown as U};
-    assert_eq!(marks, [A, A, A, I, A, U, A, I]);
+    assert_eq!(marks, [Above, Above, Above, Inside, Above, Unknown, Above, Inside]);
     // means lie 2 below the maxima, minima 4: 17 18.5 17 15 17 - 17 16 and 15 16.5 15 13 15 - 15 14
     let of = held(&rule(Statistic::DailyMean, Some(15.5), Some(18.0)), days("2026-07-01", &maxima));
-    assert_eq!(figures(&of), (1, 1, 1, 1, worst(0.5, "2026-07-02")));
+    assert_eq!(figures(&of), (1, 1, 1, 1, Some(worst(0.5, "2026-07-02"))));
     let of = held(&rule(Statistic::DailyMin, Some(14.5), None), days("2026-07-01", &maxima));
-    assert_eq!(figures(&of), (0, 2, 1, 1, worst(1.5, "2026-07-04")));
+    assert_eq!(figures(&of), (0, 2, 1, 1, Some(worst(1.5, "2026-07-04"))));
     // every reading between 14 and 18: the one farthest outside counts, on 4 July the minimum of 13
     let of = held(&rule(Statistic::Instantaneous, Some(14.0), Some(18.0)), days("2026-07-01", &maxima));
-    assert_eq!(figures(&of), (5, 1, 1, 5, worst(2.5, "2026-07-02")));
+    assert_eq!(figures(&of), (5, 1, 1, 5, Some(worst(2.5, "2026-07-02"))));
 }
 
 #[test]
@@ -73,7 +74,7 @@ fn published_three_days_in_a_row_are_over_and_two_are_not() {
     let of = held(&rule(Statistic::DaysInARow(3), None, Some(18.0)), days("2026-07-01", &hot));
     // on 3 July three are above, by the least of them 1 C; so on 10 July. 1, 2, 7, 8 and 9 July cannot be told: a day
     // of the three lacks and those there are above. 4, 5 and 6 July hold the cool day
-    assert_eq!(figures(&of), (2, 0, 5, 1, worst(1.0, "2026-07-03")));
+    assert_eq!(figures(&of), (2, 0, 5, 1, Some(worst(1.0, "2026-07-03"))));
 }
 
 #[test]
@@ -81,10 +82,10 @@ fn published_rules_that_allow_some_days() {
     let hot = [V(19.0), V(20.0), V(17.0), None, V(21.0), V(17.0), V(19.0)];
     // two days allowed: 5 July is the third, 7 July the fourth; on 5 July the day that lacks could only make it more
     let of = held(&rule(Statistic::DaysAbove(2), None, Some(18.0)), days("2026-07-01", &hot));
-    assert_eq!(figures(&of), (2, 0, 1, 1, worst(2.0, "2026-07-07")));
+    assert_eq!(figures(&of), (2, 0, 1, 1, Some(worst(2.0, "2026-07-07"))));
     // three allowed: 5 July is the third with one day unknown, so it cannot be told; 7 July is the fourth
     let of = held(&rule(Statistic::DaysAbove(3), None, Some(18.0)), days("2026-07-01", &hot));
-    assert_eq!(figures(&of), (1, 0, 2, 1, worst(1.0, "2026-07-07")));
+    assert_eq!(figures(&of), (1, 0, 2, 1, Some(worst(1.0, "2026-07-07"))));
     // a share of 60 %: 1 of 1, 2 of 2; 3 July is cool; no day; 5 July has 4 valid days of 5, one too few; 6 July is
     // cool; 7 July 4 of 6
     let of = held(&rule(Statistic::ShareOfDays(0.6), None, Some(18.0)), days("2026-07-01", &hot));
@@ -137,13 +138,13 @@ fn published_degree_days_and_changes_of_a_record() {
     // means of 5 over a base of 2: 3 a day from 1 October; a ceiling of 30 C days is passed on the 11th, by 3 a day
     let degrees = Statistic::DegreeDays { base_c: 2.0, since: YearDay { month: 10, day: 1 } };
     let of = held(&rule(degrees, None, Some(30.0)), days("2026-10-01", &[V(7.0); 12]));
-    assert_eq!(figures(&of), (2, 0, 0, 2, worst(6.0, "2026-10-12")));
+    assert_eq!(figures(&of), (2, 0, 0, 2, Some(worst(6.0, "2026-10-12"))));
     // means 12 15 13.5: changes -, 3, 1.5, up or down
     let of = held(
         &rule(Statistic::DailyChange, None, Some(2.0)),
         days("2026-07-01", &[V(14.0), V(17.0), V(15.5)]),
     );
-    assert_eq!(figures(&of), (1, 0, 1, 1, worst(1.0, "2026-07-02")));
+    assert_eq!(figures(&of), (1, 0, 1, 1, Some(worst(1.0, "2026-07-02"))));
 }
 
 #[test]
@@ -154,7 +155,7 @@ fn published_a_difference_from_a_reference() {
     let natural = days("2026-07-01", &[V(13.5), V(15.0), None, V(17.0)]);
     let coverage = Coverage::default();
     let of = observed(&above, &here, Some(&natural), coverage, |_| true).temperature.unwrap();
-    assert_eq!(figures(&of), (1, 1, 1, 1, worst(1.0, "2026-07-02")));
+    assert_eq!(figures(&of), (1, 1, 1, 1, Some(worst(1.0, "2026-07-02"))));
     // without its reference nothing can be told
     let of = observed(&above, &here, None, coverage, |_| true).temperature.unwrap();
     assert_eq!((of.all.judged, of.all.unknown), (0, 4));
@@ -179,18 +180,18 @@ fn published_oxygen_is_counted_apart_from_temperature() {
     let Observed { temperature, oxygen, oxygen_share, provisional } = of(&floor);
     // temperatures: means of 13. Oxygen: means 7 6 8 8 8 8 and no 7 July; shares: means 2.9 and 3.1
     assert_eq!((figures(&temperature.unwrap()), provisional), ((0, 0, 0, 0, None), false));
-    assert_eq!(figures(&oxygen.unwrap()), (0, 1, 1, 1, worst(0.5, "2026-07-02")));
+    assert_eq!(figures(&oxygen.unwrap()), (0, 1, 1, 1, Some(worst(0.5, "2026-07-02"))));
     assert_eq!(figures(&oxygen_share.unwrap()), (0, 0, 5, 0, None));
     // where the temperature's rule speaks of maxima the floor is held against the least: 5 4 6 6 6 6
     let least = Target { statistic: Statistic::DailyMax, oxygen_min_mg_l: Some(5.5), ..floor.clone() };
-    assert_eq!(figures(&of(&least).oxygen.unwrap()), (0, 2, 1, 2, worst(1.5, "2026-07-02")));
+    assert_eq!(figures(&of(&least).oxygen.unwrap()), (0, 2, 1, 2, Some(worst(1.5, "2026-07-02"))));
     // seven-day mean of minima: six of seven on 6 and 7 July, 33 / 6 = 5.5; too few before
     let seven = Target {
         oxygen_statistic: Some(OxygenStatistic::SevenDayMeanOfMinima),
         oxygen_min_mg_l: Some(5.7),
         ..floor
     };
-    assert_eq!(figures(&of(&seven).oxygen.unwrap()), (0, 2, 5, 2, worst(0.2, "2026-07-06")));
+    assert_eq!(figures(&of(&seven).oxygen.unwrap()), (0, 2, 5, 2, Some(worst(0.2, "2026-07-06"))));
     assert_eq!(seven.point, DAM);
 }
 

@@ -6,7 +6,7 @@ use std::sync::Arc;
 use crate::files::station::station;
 use crate::files::text::{self, Format, Source};
 use crate::files::weather::weather;
-use crate::files::yaml::Document;
+use crate::files::yaml::{Document, Node};
 use crate::problem::{Problem, Weight, any_refused};
 use crate::river::Conditions;
 use crate::site::{River, Surface};
@@ -59,7 +59,8 @@ impl Folder {
     fn read_around(&self) -> Around {
         let mut out = Around::default();
         let mut conditions = Conditions::default();
-        for wanted in wanted(self.site.river.as_ref()) {
+        let document = Document::parse(&self.source.text).ok();
+        for wanted in wanted(self.site.river.as_ref(), document.as_ref().map(Document::root)) {
             let Some(source) = self.beside(&wanted.name) else {
                 if let Some(path) = wanted.path {
                     out.missing(&wanted.name, path);
@@ -76,7 +77,7 @@ impl Folder {
             }
         }
         out.conditions = Arc::new(conditions);
-        if let Ok(document) = Document::parse(&self.source.text) {
+        if let Some(document) = document {
             // a problem of a file beside the casts names that file already, one of the site file does not
             document.locate(&mut out.problems, &self.source.name);
             document.locate(&mut out.said, &self.source.name);
@@ -153,10 +154,11 @@ pub(super) fn stays_within(name: &str) -> bool {
 }
 
 /// The files that a site is told by, in the order in which they are read.
-fn wanted(river: Option<&River>) -> Vec<Wanted> {
+fn wanted(river: Option<&River>, document: Option<&Node>) -> Vec<Wanted> {
     let mut out = vec![Wanted { name: TAILWATER.to_owned(), path: None, of: Of::Station(DAM.to_owned()) }];
     let Some(river) = river else { return out };
     for (i, point) in river.points.iter().enumerate() {
+        let i = document.and_then(|root| place_of(root, &point.name)).unwrap_or(i);
         out.extend(point.observed.iter().map(|name| Wanted {
             name: name.clone(),
             path: Some(format!("river.points[{i}].observed")),
@@ -176,4 +178,15 @@ fn wanted(river: Option<&River>) -> Vec<Wanted> {
         out.push(Wanted { name: name.clone(), path: Some("river.weather".into()), of: Of::Weather });
     }
     out
+}
+
+/// Place of a point in the list of the site file: the checked site has them in the order of the river.
+fn place_of(root: &Node, point: &str) -> Option<usize> {
+    let Node::List(points) = under(under(root, "river")?, "points")? else { return None };
+    points.iter().position(|p| matches!(under(p, "name"), Some(Node::Text(name)) if name == point))
+}
+
+fn under<'n>(node: &'n Node, key: &str) -> Option<&'n Node> {
+    let Node::Map(entries) = node else { return None };
+    entries.iter().find(|(k, _)| k == key).map(|(_, value)| value)
 }
