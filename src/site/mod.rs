@@ -8,7 +8,9 @@ mod limits;
 mod outlet;
 mod pool;
 mod raw;
+mod raw_river;
 mod river;
+mod travel;
 
 use chrono::{FixedOffset, NaiveDate};
 
@@ -25,7 +27,9 @@ pub use raw::{
     Raw, RawAvoid, RawLimits, RawNow, RawOutage, RawOutlet, RawPool, RawReserved, RawShare, RawTarget,
     RawUndrawn, RawWell,
 };
+pub use raw_river::{RawAfterbay, RawInflow, RawMonthly, RawPoint, RawReach, RawRiver, RawSeepage};
 pub use river::{Afterbay, Decay, Inflow, Point, Reach, River, Seepage, Surface, Yearly};
+pub use travel::{BULK_PER_WATER, ROUGHNESS, hours_at};
 
 /// Where the dam stands.
 #[derive(Debug, Clone, Copy, Default, PartialEq)]

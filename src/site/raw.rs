@@ -4,7 +4,7 @@ use crate::units::Folder;
 
 use super::{
     BandInputs, Bins, Block, CastChecks, Chemistry, Crew, GenerationLost, Leakage, ListedCast, Opens,
-    Position, RawRow, WidthSource,
+    Position, RawRiver, RawRow, WidthSource,
 };
 
 /// Pool as read.
@@ -259,6 +259,8 @@ pub struct Raw {
     pub name: Option<String>,
     /// Name of the river.
     pub river_name: Option<String>,
+    /// The river.
+    pub river: Option<RawRiver>,
     /// Units of bare numbers.
     pub units: Folder,
     /// Datum.

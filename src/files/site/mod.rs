@@ -2,6 +2,7 @@
 
 mod limits;
 mod outlets;
+mod river;
 mod targets;
 
 use chrono::{Offset, Utc};
@@ -134,7 +135,7 @@ fn raw_site(map: Map) -> Raw {
     let mut raw = Raw { units: units(&map), ..Raw::default() };
     let read = In { units: raw.units };
     raw.name = map.required("name").and_then(|v| v.text().map(str::to_owned));
-    raw.river_name = text(&map, "river");
+    river::river(&read, &map, &mut raw);
     raw.datum = text(&map, "datum");
     raw.utc_offset = text(&map, "utc_offset");
     within(&map, "place", |place| {

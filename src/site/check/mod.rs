@@ -1,8 +1,11 @@
 //! From raw to checked site: every problem at once, each at its path.
 
 mod limits;
+mod months;
 mod operation;
 mod outlets;
+mod reaches;
+mod river;
 mod rules;
 mod spread;
 mod statistic;
@@ -53,13 +56,17 @@ impl Site {
             );
         }
         outlets::mixed_losses(raw, &mut problems);
+        let river = river::river(raw, &mut problems);
+        river::points_of_targets(raw, &mut problems);
         let release = limits::release(raw, &mut problems);
         limits::blocks(&raw.blocks, &mut problems);
         let limits = limits::limits(raw, pool.as_ref(), &mut problems);
         let targets: Vec<Option<Target>> =
             (0..raw.targets.len()).map(|i| rules::target(raw, i, &mut problems)).collect();
         let events = rules::events(raw, &mut problems);
-        rules::references(&targets, None, &mut problems);
+        if raw.river.is_none() || river.is_some() {
+            rules::references(&targets, river.as_ref(), &mut problems);
+        }
         let (now, now_wells) = operation::now(raw, &outlets, &mut problems);
         spread::spread(raw, &mut problems);
         if any_refused(&problems) {
@@ -69,7 +76,7 @@ impl Site {
             Some(Self {
                 name: raw.name.clone()?,
                 river_name: raw.river_name.clone(),
-                river: None,
+                river,
                 year_type: raw.year_type.clone(),
                 events,
                 coverage: crate::series::Coverage::default(),

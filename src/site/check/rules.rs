@@ -108,12 +108,6 @@ pub(super) fn target(raw: &Raw, i: usize, problems: &mut Vec<Problem>) -> Option
     let span = Span { from: from?, to: to? };
     let (until, until_event) = of.until(raw, span)?;
     let point = t.point.clone().unwrap_or_else(|| DAM.into());
-    if point != DAM {
-        problems.push(
-            Problem::refused("unknown-point", format!("no point is named `{point}`"), "use `dam`")
-                .at(format!("targets[{i}].point")),
-        );
-    }
     let marked = t.source.as_deref().is_some_and(|s| s.trim().eq_ignore_ascii_case(EXAMPLE_ONLY));
     let built = Target {
         name: t.name.clone()?,
