@@ -22,6 +22,8 @@ mod settings;
 mod site;
 #[path = "bad_input/table.rs"]
 mod table;
+#[path = "bad_input/targets.rs"]
+mod targets;
 #[path = "bad_input/text.rs"]
 mod text;
 #[path = "bad_input/yaml.rs"]

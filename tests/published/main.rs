@@ -10,6 +10,7 @@ mod rejected;
 mod river;
 mod table;
 mod targets;
+mod today;
 mod units;
 mod water;
 mod wells;
