@@ -28,6 +28,8 @@ mod site;
 mod station;
 #[path = "bad_input/table.rs"]
 mod table;
+#[path = "bad_input/targets.rs"]
+mod targets;
 #[path = "bad_input/text.rs"]
 mod text;
 #[path = "bad_input/yaml.rs"]

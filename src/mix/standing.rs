@@ -199,32 +199,11 @@ impl Judge<'_> {
             oxygen_share_inside,
             share_inside_both,
             basis,
-            words: self.words(asked, rule, water, figure_c),
+            words: words(asked, rule, water, figure_c),
             wish: is_wish(self.site, asked.target, self.conflicts),
             governs: false,
         };
         (standing, [warm_room, air_room].into_iter().flatten().reduce(f64::min))
-    }
-
-    /// Why a bound cannot be judged, or what was assumed.
-    fn words(
-        &self,
-        asked: &RuleToday,
-        rule: &Target,
-        water: Option<Water>,
-        figure_c: Option<f64>,
-    ) -> Option<String> {
-        let today = match &asked.today {
-            Err(why) => return Some(why.clone()),
-            Ok(today) => today,
-        };
-        if water.is_none() {
-            return Some(format!("what arrives at {} on this day is not known", rule.point));
-        }
-        if rule.has_range() && figure_c.is_none() {
-            return Some("only the mean of the day is known there: give weather by the hour".into());
-        }
-        today.words.clone()
     }
 
     /// Shares of the perturbed cases inside the range, above the floor, and both.
@@ -284,4 +263,19 @@ fn aired(asked: &RuleToday, water: Option<Water>) -> (Stands, Option<f64>) {
     } else {
         ((Standing::Inside, Some(0.0)), Some(oxygen - floor))
     }
+}
+
+/// Why a bound cannot be judged, or what was assumed.
+fn words(asked: &RuleToday, rule: &Target, water: Option<Water>, figure_c: Option<f64>) -> Option<String> {
+    let today = match &asked.today {
+        Err(why) => return Some(why.clone()),
+        Ok(today) => today,
+    };
+    if water.is_none() {
+        return Some(format!("what arrives at {} on this day is not known", rule.point));
+    }
+    if rule.has_range() && figure_c.is_none() {
+        return Some("only the mean of the day is known there: give weather by the hour".into());
+    }
+    today.words.clone()
 }

@@ -151,9 +151,9 @@ impl Afar {
     #[inline]
     pub(super) fn distances_c<const N: usize>(&self, days: &Days<N>, out: &mut [f64; N]) {
         for bound in &self.bounds {
-            for i in 0..N {
+            for (i, out) in out.iter_mut().enumerate() {
                 let (low, high) = (at(bound.curve, days.low_c[0][i]), at(bound.curve, days.high_c[0][i]));
-                out[i] = most(most(out[i], low - bound.preferred.0), bound.preferred.1 - high);
+                *out = most(most(*out, low - bound.preferred.0), bound.preferred.1 - high);
             }
         }
     }
@@ -162,9 +162,9 @@ impl Afar {
     #[inline]
     pub(super) fn outside_c<const N: usize>(&self, days: &Days<N>, out: &mut [f64; N]) {
         for bound in &self.bounds {
-            for i in 0..N {
+            for (i, out) in out.iter_mut().enumerate() {
                 let (low, high) = (at(bound.curve, days.low_c[0][i]), at(bound.curve, days.high_c[0][i]));
-                out[i] = most(most(out[i], bound.low - high), low - bound.high);
+                *out = most(most(*out, bound.low - high), low - bound.high);
             }
         }
     }
@@ -174,12 +174,12 @@ impl Afar {
     pub(super) fn short_mg_l<const N: usize>(&self, days: &Days<N>, out: &mut [f64; N]) {
         for floor in &self.floors {
             let oxygen = &days.oxygen_mg_l[floor.oxygen];
-            for i in 0..N {
+            for (i, out) in out.iter_mut().enumerate() {
                 let (cold, warm) = (days.low_c[0][i], days.high_c[0][i]);
                 let ends = [at(floor.short, cold), at(floor.short, warm)];
                 let least = if ends[0] < ends[1] { ends[0] } else { ends[1] };
                 let dip = floor.dip * (warm - cold) * (warm - cold);
-                out[i] = most(out[i], least - dip - floor.per_mg_l * oxygen[i]);
+                *out = most(*out, least - dip - floor.per_mg_l * oxygen[i]);
             }
         }
     }

@@ -7,7 +7,7 @@ use std::path::Path;
 use gatemix::files::site::site;
 use gatemix::problem::Weight;
 
-use super::{limits, river};
+use super::{limits, river, targets};
 
 pub(super) const SOUND: &str = r#"name: Test Dam (invented)
 units: { length: m, area: m2, volume: m3, flow: m3/s, temperature: C }
@@ -148,6 +148,13 @@ const REFUSED: &[Case] = &[
 ];
 
 const FLAGGED: &[Case] = &[
+    (
+        "point: dam }",
+        "point: dam, until: hatching }\nevents: { hatching: ~ }",
+        "event-open",
+        "targets[0].until",
+        "holds to the end of its span",
+    ),
     ("[40, 5.0e6, 9.1e7, 200]", "[40, 5.0e6, 1.2e8, 200]", "volume-area", "pool.table[2]", "volume"),
     ("cold_water: [12]", "cold_water: [12]\nname2: x", "unknown-key", "name2", "unknown key"),
     ("place: { altitude: 410, latitude: 44.1 }\n", "", "altitude-unknown", "place", "sea level"),
@@ -175,7 +182,7 @@ fn scenario_the_site_that_is_changed_is_sound() {
 #[test]
 fn scenario_each_error_of_a_site_is_told_at_its_place_and_alone() {
     let mut wrong = Vec::new();
-    for (from, to, kind, path, words) in REFUSED.iter().chain(limits::REFUSED) {
+    for (from, to, kind, path, words) in REFUSED.iter().chain(limits::REFUSED).chain(targets::REFUSED) {
         let read = site(&changed(from, to), "site.yaml");
         let refused: Vec<_> = read.problems.iter().filter(|p| p.weight == Weight::Refused).collect();
         let told = refused.iter().any(|p| {
@@ -243,7 +250,7 @@ fn law_every_kind_of_problem_a_site_can_have_has_a_case() {
             }
             let text = fs::read_to_string(&path).unwrap();
             let text = text.split("#[cfg(test)]").next().unwrap();
-            for call in ["Problem::refused(", "Problem::flag(", "Problem::note("] {
+            for call in ["Problem::refused(", "Problem::flag(", "Problem::note(", ".refuse("] {
                 for piece in text.split(call).skip(1) {
                     if let Some(kind) = piece.trim_start().strip_prefix('"') {
                         kinds.insert(kind.split('"').next().unwrap().to_owned());
@@ -259,6 +266,7 @@ fn law_every_kind_of_problem_a_site_can_have_has_a_case() {
     let cases: BTreeSet<&str> = REFUSED
         .iter()
         .chain(limits::REFUSED)
+        .chain(targets::REFUSED)
         .chain(FLAGGED)
         .chain(river::REFUSED)
         .chain(river::FLAGGED)

@@ -14,6 +14,7 @@ mod series;
 mod series_pandas;
 mod table;
 mod targets;
+mod today;
 mod units;
 mod water;
 mod weather;

@@ -12,6 +12,7 @@ use crate::units::{System, in_system};
 /// A target with its standing. Keys in `_c` are of temperatures and their differences, null for a sum of degrees; `value`,
 /// `low` and `high` are in `unit`, the statistic's own.
 #[derive(Serialize)]
+#[expect(clippy::struct_excessive_bools, reason = "each is a key of its own")]
 pub(super) struct TargetJson {
     name: String,
     point: String,

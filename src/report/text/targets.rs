@@ -105,7 +105,7 @@ pub fn standing_words(s: &TargetStanding, rule: &Target, system: System) -> Stri
 pub(super) fn value_words(s: &TargetStanding, rule: &Target, system: System) -> Option<String> {
     let (one, _) = in_words(rule, system);
     let plain = rule.point == DAM && rule.is_of_temperature() && s.basis != Basis::Observed;
-    let warm = s.value_c.filter(|_| !plain && rule.has_range()).map(|value| one(value));
+    let warm = s.value_c.filter(|_| !plain && rule.has_range()).map(one);
     let count = s.count.map(|count| match rule.statistic {
         Statistic::ShareOfDays(_) => format!("with today {count:.0} % of days above"),
         Statistic::DaysInARow(_) => format!("with today {count:.0} days in a row above"),

@@ -64,7 +64,9 @@ impl Site {
         let targets: Vec<Option<Target>> =
             (0..raw.targets.len()).map(|i| rules::target(raw, i, &mut problems)).collect();
         let events = rules::events(raw, &mut problems);
-        rules::references(&targets, river.as_ref(), &mut problems);
+        if raw.river.is_none() || river.is_some() {
+            rules::references(&targets, river.as_ref(), &mut problems);
+        }
         let (now, now_wells) = operation::now(raw, &outlets, &mut problems);
         spread::spread(raw, &mut problems);
         coverage(raw, &mut problems);

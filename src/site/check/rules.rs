@@ -35,7 +35,8 @@ impl Checking<'_> {
         day
     }
 
-    fn oxygen_statistic(&mut self) -> Option<Option<OxygenStatistic>> {
+    /// The statistic of the oxygen where one is given; what is wrong with it refuses the site.
+    fn oxygen_statistic(&mut self) -> Option<OxygenStatistic> {
         let t = self.rule;
         if t.oxygen_min_mg_l.is_some() && t.oxygen_min_share.is_some() {
             let words = "oxygen_min and oxygen_min_percent are both given".to_owned();
@@ -45,7 +46,7 @@ impl Checking<'_> {
             let words = "the floor of oxygen lies outside 0 to 200 % of saturation".to_owned();
             self.refuse("target-oxygen", "oxygen_min_percent", words, "write percent, such as 80");
         }
-        let Some(name) = t.oxygen_statistic.as_deref() else { return Some(None) };
+        let name = t.oxygen_statistic.as_deref()?;
         if t.oxygen_min_mg_l.is_none() && t.oxygen_min_share.is_none() {
             let words = "oxygen_statistic is given without a floor of oxygen".to_owned();
             self.refuse("target-oxygen", "oxygen_statistic", words, "give oxygen_min, or drop it");
@@ -56,7 +57,7 @@ impl Checking<'_> {
             let words = format!("`{name}` is not a statistic of oxygen");
             self.refuse("statistic", "oxygen_statistic", words, format!("use one of {}", known.join(", ")));
         }
-        found.map(Some)
+        found
     }
 
     /// The day that ends it, and the event of that day; `None` where that is wrong.
@@ -119,7 +120,7 @@ pub(super) fn target(raw: &Raw, i: usize, problems: &mut Vec<Problem>) -> Option
         buffer_c: t.buffer_c.unwrap_or(0.0),
         oxygen_min_mg_l: t.oxygen_min_mg_l,
         oxygen_min_share: t.oxygen_min_share,
-        oxygen_statistic: oxygen_statistic?,
+        oxygen_statistic,
         point,
         reference: t.reference.as_deref().map(|name| match name {
             NATURAL => Reference::Natural,

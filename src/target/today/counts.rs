@@ -83,7 +83,7 @@ pub(super) fn of_days(rule: &Target, date: NaiveDate, most: Most, known: Known) 
     };
     let used_up = match most {
         Most::Days(most) => above > most,
-        Most::Share(most) => f64::from(above) > most * f64::from(of) + 1e-9,
+        Most::Share(most) => f64::from(above) > most * (f64::from(of) + 1.0) + 1e-9,
     };
     let words = used_up.then(|| "more days lie above than the rule allows, whatever today brings".to_owned());
     Today { high_c: today.high_c.filter(|_| !free), count: Some(count), observed: true, words, ..today }

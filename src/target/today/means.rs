@@ -21,7 +21,7 @@ pub(super) fn of_today(
         return Ok(today);
     }
     let reference = reference(rule, date, known)?;
-    if figure == Figure::Both && (reference.max > reference.min || reference.max < reference.min) {
+    if figure == Figure::Both && reference.max > reference.min {
         // each reading is to be held against the reading of the reference at that time
         return Err("readings are not held against a reference that changes over the day".into());
     }
