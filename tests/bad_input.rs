@@ -24,6 +24,8 @@ mod site;
 mod table;
 #[path = "bad_input/text.rs"]
 mod text;
+#[path = "bad_input/weather.rs"]
+mod weather;
 #[path = "bad_input/yaml.rs"]
 mod yaml;
 
