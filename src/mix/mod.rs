@@ -3,6 +3,7 @@
 mod band;
 mod beware;
 mod blend;
+mod gain;
 mod judge;
 mod levels;
 pub mod limits;

@@ -19,7 +19,7 @@ pub struct TargetStanding {
     pub value_c: Option<f64>,
     /// Standing of the temperature and distance outside, C.
     pub temperature: (Standing, Option<f64>),
-    /// Oxygen, mg/L.
+    /// Oxygen below the dam, mg/L.
     pub oxygen_mg_l: Option<f64>,
     /// Standing of the oxygen and distance below, mg/L.
     pub oxygen: (Standing, Option<f64>),
@@ -58,7 +58,8 @@ pub type Part<'a> = (f64, &'a Blend, &'a Spread);
 /// where the rule speaks of a daily mean, else by its least.
 pub fn standings(site: &Site, parts: &[Part], date: NaiveDate) -> Vec<TargetStanding> {
     let temperatures: Vec<(f64, f64)> = parts.iter().map(|p| (p.0, p.1.temperature_c)).collect();
-    let oxygens: Option<Vec<(f64, f64)>> = parts.iter().map(|p| Some((p.0, p.1.oxygen_mg_l?))).collect();
+    let oxygens: Option<Vec<(f64, f64)>> =
+        parts.iter().map(|p| Some((p.0, p.1.oxygen_below_mg_l?))).collect();
     // a case without oxygen is neither inside nor outside, so one such case leaves the shares unknown
     let oxygen_known = oxygens.is_some() && parts.iter().all(|p| p.2.cases.iter().all(|c| c.1.is_some()));
     let valid = site.targets.iter().enumerate().filter(|(_, rule)| rule.span.contains(date));
