@@ -118,7 +118,7 @@ const REFUSED: &[Case] = &[
     ("wind_m_s", "wind", "no-column", Some(2), "no column tells the wind"),
     ("cloud_percent,radiation_w_m2", "cloud,sun", "no-column", Some(2), "no column tells the sky"),
     ("cloud_percent", "air_F", "column-twice", Some(2), "both air_C and air_F are given"),
-    ("dew_point_C", "dew_point_C,dew_point_F", "cell-count", Some(3), "6 cells where the header names 7"),
+    ("dew_point_C", "dew_point_C,dew_point_F", "no-header", Some(2), "this line names 7 columns"),
     ("2026-07-02,", "2026-07-32,", "time", Some(4), "`2026-07-32` is not a date of our days"),
     ("2026-07-02,", ",", "time", Some(4), "`` is not a date of our days"),
     (
