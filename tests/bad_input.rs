@@ -4,6 +4,8 @@
 
 #[path = "bad_input/around.rs"]
 mod around;
+#[path = "bad_input/aeration.rs"]
+mod aeration;
 #[path = "bad_input/atomic.rs"]
 mod atomic;
 #[path = "bad_input/cursor.rs"]
@@ -32,6 +34,8 @@ mod table;
 mod targets;
 #[path = "bad_input/text.rs"]
 mod text;
+#[path = "bad_input/weather.rs"]
+mod weather;
 #[path = "bad_input/yaml.rs"]
 mod yaml;
 

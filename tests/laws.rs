@@ -22,6 +22,8 @@ mod rank;
 mod series;
 #[path = "laws/shape.rs"]
 mod shape;
+#[path = "laws/weather.rs"]
+mod weather;
 #[path = "laws/wells/mod.rs"]
 mod wells;
 #[path = "laws/withdrawal.rs"]

@@ -39,8 +39,9 @@ fn read(source: &Source, site: &Site, problems: &mut Vec<Problem>) -> Option<Wea
     let table = match Table::parse_with(&source.text, &is_header) {
         Ok(table) => table,
         Err(found) => {
-            // the cure of the table speaks of casts
-            problems.extend(found.into_iter().map(|p| if p.kind == "no-header" { no_header(p) } else { p }));
+            // what the table says of a header it does not find speaks of casts
+            let lost = |p: &Problem| p.kind == "no-header" && p.place.line.is_none();
+            problems.extend(found.into_iter().map(|p| if lost(&p) { no_header() } else { p }));
             return None;
         }
     };
@@ -62,13 +63,10 @@ fn read(source: &Source, site: &Site, problems: &mut Vec<Problem>) -> Option<Wea
     Some(Weather { forecast_from, ..weather })
 }
 
-fn no_header(found: Problem) -> Problem {
+fn no_header() -> Problem {
     let names: Vec<&str> = Column::ALL.iter().map(|c| c.name()).collect();
     let words = "no line names a time or a date and the air temperature with its unit";
-    Problem {
-        place: found.place,
-        ..Problem::refused("no-header", words, format!("use {}", names.join(", ")))
-    }
+    Problem::refused("no-header", words, format!("use {}", names.join(", ")))
 }
 
 type Meta = (Option<f64>, Option<DateTime<FixedOffset>>);

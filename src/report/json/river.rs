@@ -152,7 +152,7 @@ fn way(context: &Context, way: &Way) -> WayJson {
         setting: setting(site, &p.setting),
         flow_m3s: p.release.flow_m3s,
         temperature_c: p.release.temperature_c,
-        oxygen_mg_l: p.release.oxygen_mg_l,
+        oxygen_mg_l: p.release.oxygen_below_mg_l,
     };
     let along = way.course.iter().flat_map(|course| &course.along).map(|p| PlaceJson {
         distance_km: p.at_m / KM_M,

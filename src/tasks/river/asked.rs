@@ -1,6 +1,6 @@
 //! The release each point would need for its rules today.
 
-use crate::mix::{RuleToday, saturation_below_mg_l};
+use crate::mix::RuleToday;
 use crate::river::{self, Floor, Part, Wanted, course, least_oxygen};
 use crate::target::{Air, Figure, OxygenFigure, Today};
 use crate::tasks::Context;
@@ -179,7 +179,7 @@ fn floor(context: &Context, way: &Way, point: Option<usize>, air: &Air) -> Resul
     let release_c = way.temperature_c();
     let Some(point) = point else {
         let salt = way.parts.first().map_or(0.0, |p| p.release.salt_g_per_kg);
-        let floor = air.floor_mg_l(saturation_below_mg_l(site, release_c, salt));
+        let floor = air.floor_mg_l(site.saturation_below_mg_l(release_c, salt));
         return Ok((floor, floor));
     };
     let floor = match (air.figure, air.share) {

@@ -117,9 +117,9 @@ impl Way {
         self.mean(|b| b.temperature_c)
     }
 
-    /// Time mean of the oxygen, mg/L.
+    /// Time mean of the oxygen below the dam, mg/L.
     pub fn oxygen_mg_l(&self) -> Option<f64> {
-        self.parts.iter().map(|p| Some(p.share * p.release.oxygen_mg_l?)).sum()
+        self.parts.iter().map(|p| Some(p.share * p.release.oxygen_below_mg_l?)).sum()
     }
 
     /// The perturbed cases at the dam, as time means.
@@ -143,7 +143,7 @@ fn released(parts: &[WayPart]) -> Vec<Part> {
         hours: DAY_H * p.share,
         flow_m3s: p.release.flow_m3s,
         temperature_c: p.release.temperature_c,
-        oxygen_mg_l: p.release.oxygen_mg_l,
+        oxygen_mg_l: p.release.oxygen_below_mg_l,
     };
     parts.iter().map(part).collect()
 }
