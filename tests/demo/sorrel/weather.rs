@@ -49,7 +49,7 @@ impl Weather {
         let cloud = (0.42 + 0.25 * self.cloud).clamp(0.0, 1.0);
         let mean_c = 12.8 + 11.2 * yearly(date, 203.0) + 2.2 * self.air + heat_wave_c(date);
         let dew_c = mean_c - 5.5 + 1.5 * self.damp;
-        let wind_m_s = (3.3 + 0.6 * yearly(date, 80.0) + 0.8 * self.wind).max(0.6);
+        let wind_m_s = (2.9 + 0.6 * yearly(date, 80.0) + 0.8 * self.wind).max(0.6);
         std::array::from_fn(|hour| {
             // the middle of the hour stands for it
             let clock = hour as f64 + 0.5;
