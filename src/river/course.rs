@@ -8,6 +8,10 @@ use crate::problem::Problem;
 use crate::site::Site;
 
 use super::Conditions;
+use super::figures::{Figures, hourly};
+use super::run::{Run, Seen};
+use super::slices::{Slice, slices};
+use super::water::Water;
 
 /// A part of the day with its release, in the order of the day from midnight.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -20,25 +24,6 @@ pub struct Part {
     pub temperature_c: f64,
     /// Oxygen below the dam, mg/L.
     pub oxygen_mg_l: Option<f64>,
-}
-
-/// The figures of a day's water at one place.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub struct Figures {
-    /// Time mean of the temperature, C.
-    pub mean_c: f64,
-    /// Greatest and least temperature, C; `None` where only days are known, not hours.
-    pub range_c: Option<(f64, f64)>,
-    /// Greatest change from one hour to the next, C; `None` as above.
-    pub hourly_change_c: Option<f64>,
-    /// Time mean of the oxygen, mg/L.
-    pub oxygen_mean_mg_l: Option<f64>,
-    /// Least oxygen, mg/L; the mean where only days are known.
-    pub oxygen_min_mg_l: Option<f64>,
-    /// Least and mean oxygen over saturation.
-    pub oxygen_share: Option<(f64, f64)>,
-    /// Flow, m3/s, as its time mean.
-    pub flow_m3s: f64,
 }
 
 /// What arrives at a point.
@@ -78,9 +63,50 @@ pub struct Course {
     pub flags: Vec<Problem>,
 }
 
+/// Looks along the river for a picture, beside those that points and streams bring (choice).
+const LOOKS: usize = 80;
+
 /// Carries a day's release down the river. `None` where the site has no river or what its surface trades with the air
 /// on that day is not known.
+///
+/// With parts of the day, or weather by the hour, each hour's water goes down by itself; else one parcel speaks for the
+/// day, released at noon.
 pub fn course(site: &Site, conditions: &Conditions, date: NaiveDate, parts: &[Part]) -> Option<Course> {
-    let _ = (site, conditions, date, parts);
-    None
+    let flows: Vec<(f64, f64)> = parts.iter().map(|p| (p.hours, p.flow_m3s)).collect();
+    let run = Run::new(site, conditions, date, &flows, LOOKS)?;
+    let slices = slices(parts, run.river().decay.demand_mg_l, run.by_hour);
+    let (rows, met) = run.carry(&slices);
+    Some(Course {
+        points: at_points(&run, &slices, &rows),
+        along: along(&run, &slices, &rows),
+        flags: run.flags(&met),
+    })
+}
+
+/// What arrives at every point.
+pub(super) fn at_points(run: &Run, slices: &[Slice], rows: &[Vec<Seen>]) -> Vec<AtPoint> {
+    let day: f64 = slices.iter().map(|s| s.hours).sum();
+    let flow = slices.iter().map(|s| s.hours * s.water.flow_m3s).sum::<f64>() / day;
+    let hours = run.hours(flow);
+    let one = |(point, &[travel_h, rise_first_h, rise_h]): (usize, &[f64; 3])| {
+        let there = there(rows, |seen| seen.point == Some(point));
+        let figures = Figures::of(slices, &there, run.by_hour, run.pressure_atm);
+        let hourly_c = if run.by_hour { hourly(slices, &there) } else { Vec::new() };
+        AtPoint { point, figures, travel_h, rise_first_h, rise_h, hourly_c }
+    };
+    hours.iter().enumerate().map(one).collect()
+}
+
+fn along(run: &Run, slices: &[Slice], rows: &[Vec<Seen>]) -> Vec<Place> {
+    let Some(first) = rows.first() else { return Vec::new() };
+    let place = |(i, seen): (usize, &Seen)| {
+        let there: Vec<Water> = rows.iter().filter_map(|row| row.get(i)).map(|s| s.water).collect();
+        Place { at_m: seen.at_m, figures: Figures::of(slices, &there, run.by_hour, run.pressure_atm) }
+    };
+    first.iter().enumerate().map(place).collect()
+}
+
+/// Each slice's water at the place that is asked for.
+pub(super) fn there(rows: &[Vec<Seen>], is_it: impl Fn(&Seen) -> bool) -> Vec<Water> {
+    rows.iter().filter_map(|row| row.iter().find(|seen| is_it(seen))).map(|seen| seen.water).collect()
 }

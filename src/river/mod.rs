@@ -2,10 +2,20 @@
 //!
 //! Methods: `docs/methods.md`, section 6.
 
+mod afterbay;
 mod conditions;
 mod course;
+mod figures;
+mod legs;
 mod link;
+mod run;
+mod sky;
+mod slices;
+mod stream;
+mod water;
 
 pub use conditions::Conditions;
-pub use course::{AtPoint, Course, Figures, Part, Place, course};
+pub use course::{AtPoint, Course, Part, Place, course};
+pub use figures::Figures;
 pub use link::{Curve, Link, links};
+pub use water::HEAT_J_M3_C;

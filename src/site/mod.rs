@@ -8,7 +8,9 @@ mod limits;
 mod outlet;
 mod pool;
 mod raw;
+mod raw_river;
 mod river;
+mod travel;
 
 use chrono::{FixedOffset, NaiveDate};
 
@@ -25,7 +27,9 @@ pub use raw::{
     Raw, RawAvoid, RawLimits, RawNow, RawOutage, RawOutlet, RawPool, RawReserved, RawShare, RawTarget,
     RawUndrawn, RawWell,
 };
+pub use raw_river::{RawAfterbay, RawInflow, RawMonthly, RawPoint, RawReach, RawRiver, RawSeepage};
 pub use river::{Afterbay, Decay, Inflow, Point, Reach, River, Seepage, Surface, Yearly};
+pub use travel::{BULK_PER_WATER, ROUGHNESS, hours_at};
 
 /// Where the dam stands.
 #[derive(Debug, Clone, Copy, Default, PartialEq)]
@@ -258,6 +262,12 @@ impl Site {
     /// Index of a well by name.
     pub fn well(&self, name: &str) -> Option<usize> {
         self.wells.iter().position(|w| w.name == name)
+    }
+
+    /// Targets valid on a date, each with its index.
+    pub fn targets_on(&self, date: NaiveDate) -> impl Iterator<Item = (usize, &Target)> {
+        let year_type = self.year_type.as_deref();
+        self.targets.iter().enumerate().filter(move |(_, rule)| rule.valid_on(date, year_type))
     }
 
     /// Air pressure at the water surface, atm; at sea level where the altitude is not known.

@@ -72,6 +72,8 @@ pub struct Reach {
     pub depth_m: f64,
     /// Slope of the bed, where travel comes from width, depth and slope.
     pub slope: Option<f64>,
+    /// Roughness after Manning, where travel comes from the slope.
+    pub roughness: f64,
     /// Flow (m3/s) and hours the water takes through the reach, by flow; empty where it comes from the geometry.
     pub travel_h: Vec<(f64, f64)>,
     /// Flow (m3/s) and hours the bulk of a rise takes, by flow; empty where it is computed.
@@ -143,5 +145,39 @@ impl Yearly {
             Self::Constant(value) => *value,
             Self::Monthly(values) => values[(month.clamp(1, 12) - 1) as usize],
         }
+    }
+}
+
+impl Reach {
+    /// Where it ends, from the dam, m.
+    pub fn to_m(&self) -> f64 {
+        self.from_m + self.length_m
+    }
+}
+
+impl Point {
+    /// Stage of a flow by its rating, m; `None` without a rating and outside its rows.
+    pub fn stage_m(&self, flow_m3s: f64) -> Option<f64> {
+        self.rating.windows(2).find_map(|rows| {
+            let [(q0, s0), (q1, s1)] = *rows else { return None };
+            ((q0..=q1).contains(&flow_m3s) && q1 > q0).then(|| s0 + (s1 - s0) * (flow_m3s - q0) / (q1 - q0))
+        })
+    }
+}
+
+impl River {
+    /// Where the last reach ends, m from the dam.
+    pub fn length_m(&self) -> f64 {
+        self.reaches.last().map_or(0.0, Reach::to_m)
+    }
+
+    /// Index of a point by name.
+    pub fn point(&self, name: &str) -> Option<usize> {
+        self.points.iter().position(|p| p.name == name)
+    }
+
+    /// All streams that join, from the dam down.
+    pub fn inflows(&self) -> impl Iterator<Item = &Inflow> {
+        self.reaches.iter().flat_map(|r| &r.inflows)
     }
 }

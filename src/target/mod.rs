@@ -6,8 +6,10 @@ mod rule;
 mod span;
 mod standing;
 mod statistic;
+mod today;
 
 pub use rule::{DAM, Reference, Target};
 pub use span::{Span, YearDay};
 pub use standing::Standing;
-pub use statistic::{OxygenStatistic, Statistic};
+pub use statistic::{OxygenFigure, OxygenStatistic, Statistic};
+pub use today::{Air, Basis, Count, Figure, Known, Today, today};

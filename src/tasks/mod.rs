@@ -12,6 +12,7 @@ use crate::files::cast::{TIME_CURE, parse_time};
 use crate::files::folder::{self, Folder, demonstrations};
 use crate::files::template;
 use crate::files::text::Source;
+use crate::mix::Day;
 use crate::problem::Problem;
 use crate::profile::Profile;
 use crate::river::Conditions;
@@ -131,6 +132,11 @@ impl Context {
     /// The checked site.
     pub fn site(&self) -> &Site {
         &self.folder.site
+    }
+
+    /// The decision date with what is known around the river.
+    pub fn day(&self) -> Day {
+        Day::new(self.site(), self.on.date_naive(), self.conditions.clone())
     }
 
     /// A site with a cast of it and a decision date.

@@ -29,7 +29,7 @@ impl Default for Folder {
 impl Folder {
     /// Takes the unit a word names for one dimension. Temperature and its difference are set together;
     /// a velocity is that length in a
-    /// second; concentrations and percentages have one unit only.
+    /// second; distances follow it to km or miles; concentrations and percentages have one unit only.
     ///
     /// # Errors
     /// The word names no unit of that dimension.
@@ -43,7 +43,7 @@ impl Folder {
             Dimension::Temperature | Dimension::TemperatureDifference => {
                 self.temperature = Unit::parse(word, Dimension::Temperature)?;
             }
-            Dimension::Velocity | Dimension::Concentration | Dimension::Percent => {}
+            Dimension::Distance | Dimension::Velocity | Dimension::Concentration | Dimension::Percent => {}
         }
         Ok(())
     }
@@ -60,7 +60,7 @@ impl Folder {
             Dimension::Area => self.area,
             Dimension::Volume => self.volume,
             Dimension::Flow => self.flow,
-            Dimension::Velocity => self.system().unit(dimension),
+            Dimension::Distance | Dimension::Velocity => self.system().unit(dimension),
             Dimension::Temperature => self.temperature,
             Dimension::TemperatureDifference => self.temperature.of_difference(),
             Dimension::Concentration => Unit::MilligramPerLitre,

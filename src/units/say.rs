@@ -15,8 +15,9 @@ const OPEN: char = '\u{2}';
 const CLOSE: char = '\u{3}';
 
 /// The letter that names a dimension inside a mark.
-const LETTERS: [(char, Dimension); 7] = [
+const LETTERS: [(char, Dimension); 8] = [
     ('L', Dimension::Length),
+    ('K', Dimension::Distance),
     ('A', Dimension::Area),
     ('V', Dimension::Volume),
     ('Q', Dimension::Flow),
@@ -37,6 +38,11 @@ pub struct Said {
 /// An elevation, depth, height or head, m.
 pub fn m(value_m: f64, decimals: u8) -> Said {
     Said::new('L', value_m, decimals)
+}
+
+/// A way along the river, m.
+pub fn along(value_m: f64, decimals: u8) -> Said {
+    Said::new('K', value_m, decimals)
 }
 
 /// An area, m2.
@@ -108,7 +114,7 @@ impl Said {
     /// Decimals that keep about the precision of the SI figure (choice).
     fn decimals_in(self, dimension: Dimension, system: System) -> u8 {
         match (system, dimension) {
-            (System::Si, _) => self.decimals,
+            (System::Si, _) | (System::Us, Dimension::Distance) => self.decimals,
             (System::Us, Dimension::Length | Dimension::Velocity) => self.decimals.saturating_sub(1),
             (System::Us, Dimension::Flow) => self.decimals.saturating_sub(2),
             // a small pool would read 0 acre

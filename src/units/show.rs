@@ -5,9 +5,9 @@ use super::unit::{Dimension, Unit};
 /// The units on screens and in reports; data for programs stays SI.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Default)]
 pub enum System {
-    /// ft, acre, acre-ft, cfs, ft/s, F.
+    /// ft, mi, acre, acre-ft, cfs, ft/s, F.
     Us,
-    /// m, m2, m3, m3/s, m/s, C.
+    /// m, km, m2, m3, m3/s, m/s, C.
     #[default]
     Si,
 }
@@ -18,6 +18,8 @@ impl System {
         match (dimension, self) {
             (Dimension::Length, Self::Us) => Unit::Foot,
             (Dimension::Length, Self::Si) => Unit::Metre,
+            (Dimension::Distance, Self::Us) => Unit::Mile,
+            (Dimension::Distance, Self::Si) => Unit::Kilometre,
             (Dimension::Area, Self::Us) => Unit::Acre,
             (Dimension::Area, Self::Si) => Unit::SquareMetre,
             (Dimension::Volume, Self::Us) => Unit::AcreFoot,

@@ -17,6 +17,8 @@ const DAY_S: f64 = 86_400.0;
 pub enum Dimension {
     /// Elevation, depth, head, width; m.
     Length,
+    /// Way along a river; m inside, km or miles outside.
+    Distance,
     /// Plan area; m2.
     Area,
     /// Stored water; m3.
@@ -48,7 +50,7 @@ impl Dimension {
             Self::Length => 1e5,
             Self::Area => 1e12,
             Self::Volume => 1e15,
-            Self::Flow => 1e7,
+            Self::Distance | Self::Flow => 1e7,
             Self::Velocity | Self::Temperature => 1e3,
             Self::TemperatureDifference => 1e2,
             Self::Concentration => 1e6,
@@ -71,6 +73,7 @@ impl fmt::Display for Dimension {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
         f.write_str(match self {
             Self::Length => "length",
+            Self::Distance => "distance",
             Self::Area => "area",
             Self::Volume => "volume",
             Self::Flow => "flow",
@@ -123,6 +126,8 @@ macro_rules! table {
 table! {
     Metre: Length, "m", ["metre", "metres", "meter", "meters"], 1.0, 0.0;
     Foot: Length, "ft", ["foot", "feet"], FOOT_M, 0.0;
+    Kilometre: Distance, "km", ["kilometre", "kilometres", "kilometer", "kilometers"], 1e3, 0.0;
+    Mile: Distance, "mi", ["mile", "miles"], 5280.0 * FOOT_M, 0.0;
     SquareMetre: Area, "m2", ["sq m"], 1.0, 0.0;
     SquareKilometre: Area, "km2", ["sq km"], 1e6, 0.0;
     Hectare: Area, "ha", ["hectare", "hectares"], 1e4, 0.0;

@@ -4,6 +4,7 @@
 
 mod density;
 mod oxygen;
+mod reaeration;
 mod solids;
 mod thermal;
 
@@ -17,6 +18,10 @@ pub use density::{
 pub use oxygen::{
     oxygen_from_percent_mg_l, oxygen_percent, pressure_atm, pressure_factor, saturation_1atm_mg_l,
     saturation_mg_l, vapour_pressure_atm,
+};
+pub use reaeration::{
+    Sag, churchill_per_day, critical_sag, deficit_mg_l, o_connor_dobbins_per_day, owens_gibbs_per_day,
+    reaeration_at_per_day, reaeration_per_day,
 };
 pub use solids::{
     CONDUCTIVITY_PER_C, SOLIDS_PER_CONDUCTANCE, dissolved_from_conductance_mg_l, dissolved_g_per_kg,

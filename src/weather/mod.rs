@@ -1,14 +1,22 @@
 //! Weather over the river and the pool: humidity, sun, wind, and the heat they bring to water.
 //!
-//! Methods: `docs/methods.md`, sections 1 and 6.
+//! Methods: `docs/methods.md`, section 6.
 
 mod budget;
+pub mod humidity;
+mod reading;
+pub mod sun;
+mod wind;
 
 use std::collections::BTreeMap;
 
 use chrono::{DateTime, FixedOffset, NaiveDate, Timelike};
 
-pub use budget::{Budget, budget, equilibrium_c, exchange_w_m2_c};
+pub use budget::{
+    Budget, REFLECTED, budget, equilibrium_c, exchange_w_m2_c, vapour_slope_mmhg_c, wind_function,
+};
+pub use reading::{CLOUD_UNKNOWN, Damp, LEAST_HUMIDITY, Reading, Sky, Stand};
+pub use wind::{STATION_HEIGHT_M, WIND_HEIGHT_M, wind_at_7_m};
 
 /// The air over the water, of a moment or as the mean of a day.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -25,6 +33,24 @@ pub struct Air {
     pub solar_w_m2: f64,
 }
 
+impl Air {
+    /// The mean of several airs of equal length; `None` of none. Vapour pressure is averaged, not dew point: half as
+    /// much vapour is not half the dew point.
+    pub fn mean(airs: &[Self]) -> Option<Self> {
+        if airs.is_empty() {
+            return None;
+        }
+        let mean = |of: &dyn Fn(&Self) -> f64| airs.iter().map(of).sum::<f64>() / airs.len() as f64;
+        Some(Self {
+            temperature_c: mean(&|air| air.temperature_c),
+            dew_point_c: humidity::dew_point_c(mean(&|air| humidity::saturation_kpa(air.dew_point_c))),
+            wind_m_s: mean(&|air| air.wind_m_s),
+            cloud: mean(&|air| air.cloud),
+            solar_w_m2: mean(&|air| air.solar_w_m2),
+        })
+    }
+}
+
 /// Weather as a series: by the hour or by the day. What is missing is absent.
 #[derive(Debug, Clone, Default, PartialEq)]
 pub struct Weather {
@@ -32,9 +58,25 @@ pub struct Weather {
     pub hours: BTreeMap<DateTime<FixedOffset>, Air>,
     /// Means of days; of hourly weather those of the days with all 24 hours.
     pub days: BTreeMap<NaiveDate, Air>,
+    /// From when on it is a forecast.
+    pub forecast_from: Option<DateTime<FixedOffset>>,
 }
 
+/// Hours of a day.
+const HOURS: usize = 24;
+
 impl Weather {
+    /// Weather by the hour, with the means of its whole days. The hours are those of the site's offset.
+    pub fn of_hours(hours: BTreeMap<DateTime<FixedOffset>, Air>) -> Self {
+        let mut by_day: BTreeMap<NaiveDate, Vec<Air>> = BTreeMap::new();
+        for (time, air) in &hours {
+            by_day.entry(time.date_naive()).or_default().push(*air);
+        }
+        let whole = by_day.into_iter().filter(|(_, airs)| airs.len() >= HOURS);
+        let days = whole.filter_map(|(date, airs)| Some((date, Air::mean(&airs)?))).collect();
+        Self { hours, days, forecast_from: None }
+    }
+
     /// Whether it goes by the hour.
     pub fn is_hourly(&self) -> bool {
         !self.hours.is_empty()
@@ -44,5 +86,10 @@ impl Weather {
     pub fn at(&self, time: DateTime<FixedOffset>) -> Option<Air> {
         let hour = time.with_minute(0)?.with_second(0)?.with_nanosecond(0)?;
         self.hours.get(&hour).or_else(|| self.days.get(&time.date_naive())).copied()
+    }
+
+    /// The mean air of a day.
+    pub fn day(&self, date: NaiveDate) -> Option<Air> {
+        self.days.get(&date).copied()
     }
 }

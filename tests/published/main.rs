@@ -7,6 +7,7 @@ mod layering;
 mod mix;
 mod pool;
 mod rejected;
+mod river;
 mod table;
 mod targets;
 mod units;

@@ -3,8 +3,9 @@
 use crate::table::rows;
 use gatemix::units::{Dimension, Unit};
 
-const DIMENSIONS: [Dimension; 9] = [
+const DIMENSIONS: [Dimension; 10] = [
     Dimension::Length,
+    Dimension::Distance,
     Dimension::Area,
     Dimension::Volume,
     Dimension::Flow,
@@ -17,7 +18,7 @@ const DIMENSIONS: [Dimension; 9] = [
 
 #[test]
 fn published_unit_factors() {
-    let rows = rows("unit_factors.csv", 18);
+    let rows = rows("unit_factors.csv", 20);
     for row in &rows {
         let named = |name: &str| DIMENSIONS.into_iter().find(|dimension| dimension.to_string() == name);
         let dimension = named(row.text("dimension")).unwrap();

@@ -4,6 +4,7 @@ mod gates;
 mod mix;
 mod pool;
 pub mod rank;
+mod targets;
 
 use std::fmt::Write as _;
 
@@ -15,11 +16,9 @@ use crate::tasks::{Context, Freshness, MixAnswer, PoolAnswer};
 use crate::units::{Dimension, System, show};
 
 pub use gates::{instruction, moves, openings};
-pub use mix::{
-    apart, difference, missed, range, release_line, release_words, setting_words, standing_words,
-    wells_changed,
-};
+pub use mix::{apart, difference, missed, release_line, release_words, setting_words, wells_changed};
 pub use pool::{cold_since_words, layer_words, reach_words, since_words};
+pub use targets::{EXAMPLE, named, range, standing_words};
 
 use super::column::drawn_column;
 use super::fitted;

@@ -1,9 +1,14 @@
 //! From raw to checked site: every problem at once, each at its path.
 
 mod limits;
+mod months;
 mod operation;
 mod outlets;
+mod reaches;
+mod river;
 mod rules;
+mod spread;
+mod statistic;
 
 use std::collections::HashMap;
 
@@ -51,13 +56,19 @@ impl Site {
             );
         }
         outlets::mixed_losses(raw, &mut problems);
+        let river = river::river(raw, &mut problems);
+        river::points_of_targets(raw, &mut problems);
         let release = limits::release(raw, &mut problems);
         limits::blocks(&raw.blocks, &mut problems);
         let limits = limits::limits(raw, pool.as_ref(), &mut problems);
         let targets: Vec<Option<Target>> =
-            raw.targets.iter().enumerate().map(|(i, t)| rules::target(t, i, &mut problems)).collect();
+            (0..raw.targets.len()).map(|i| rules::target(raw, i, &mut problems)).collect();
+        let events = rules::events(raw, &mut problems);
+        if raw.river.is_none() || river.is_some() {
+            rules::references(&targets, river.as_ref(), &mut problems);
+        }
         let (now, now_wells) = operation::now(raw, &outlets, &mut problems);
-        rules::spread(raw, &mut problems);
+        spread::spread(raw, &mut problems);
         if any_refused(&problems) {
             return (None, problems);
         }
@@ -65,9 +76,9 @@ impl Site {
             Some(Self {
                 name: raw.name.clone()?,
                 river_name: raw.river_name.clone(),
-                river: None,
-                year_type: None,
-                events: Vec::new(),
+                river,
+                year_type: raw.year_type.clone(),
+                events,
                 coverage: crate::series::Coverage::default(),
                 units: raw.units,
                 datum: datum?,

@@ -1,0 +1,76 @@
+//! The water that a side stream or seepage brings at a moment.
+
+use chrono::{DateTime, Datelike, FixedOffset, TimeDelta};
+
+use crate::series::{Record, Series};
+use crate::site::{Inflow, Seepage, Yearly};
+
+use super::water::Water;
+
+/// Farthest reading that still speaks for a moment, h (choice).
+const NEAR_H: i64 = 3;
+
+/// What a stream brings.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(super) struct Brought {
+    pub(super) water: Water,
+    /// Its series ended before, and its last reading holds on.
+    pub(super) held: bool,
+}
+
+/// The water of a stream: by its series where that tells the moment, else by its figures, else by the last reading
+/// before. `None` where flow or temperature are not known at all.
+pub(super) fn brought(
+    stream: &Inflow,
+    record: Option<&Record>,
+    at: DateTime<FixedOffset>,
+    by_hour: bool,
+) -> Option<Brought> {
+    let mut held = false;
+    let mut figure = |series: Option<&Series>, given: Option<&Yearly>| {
+        let told = series.and_then(|s| told(s, at, by_hour)).or(given.map(|g| g.in_month(at.month())));
+        told.or_else(|| {
+            let last = series.and_then(|s| last(s, at));
+            held |= last.is_some();
+            last
+        })
+    };
+    let flow_m3s = figure(record.map(|r| &r.flow_m3s), stream.flow_m3s.as_ref())?.max(0.0);
+    let temperature_c = figure(record.map(|r| &r.temperature_c), stream.temperature_c.as_ref())?;
+    let oxygen_mg_l = figure(record.map(|r| &r.oxygen_mg_l), stream.oxygen_mg_l.as_ref());
+    Some(Brought { water: Water { flow_m3s, temperature_c, oxygen_mg_l, demand_mg_l: 0.0 }, held })
+}
+
+/// The water that seeps into a whole reach in a month.
+pub(super) fn seeping(seepage: &Seepage, month: u32) -> Water {
+    Water {
+        flow_m3s: seepage.flow_m3s.in_month(month),
+        temperature_c: seepage.temperature_c.in_month(month),
+        oxygen_mg_l: seepage.oxygen_mg_l.as_ref().map(|o| o.in_month(month)),
+        demand_mg_l: 0.0,
+    }
+}
+
+/// By the hour the nearest reading; else, or where none is near, the mean of the readings of the day.
+fn told(series: &Series, at: DateTime<FixedOffset>, by_hour: bool) -> Option<f64> {
+    let readings = series.readings();
+    let next = readings.partition_point(|r| r.0 <= at);
+    if by_hour {
+        let around = [next.checked_sub(1), Some(next)].into_iter().flatten().filter_map(|i| readings.get(i));
+        let nearest = around.min_by_key(|r| (r.0 - at).abs());
+        if let Some(near) = nearest.filter(|r| (r.0 - at).abs() <= TimeDelta::hours(NEAR_H)) {
+            return Some(near.1);
+        }
+    }
+    let midnight =
+        at.date_naive().and_time(chrono::NaiveTime::MIN).and_local_timezone(*at.offset()).single()?;
+    let from = readings.partition_point(|r| r.0 < midnight);
+    let to = readings.partition_point(|r| r.0 < midnight + TimeDelta::hours(24));
+    let day = readings.get(from..to).filter(|day| !day.is_empty())?;
+    Some(day.iter().map(|r| r.1).sum::<f64>() / day.len() as f64)
+}
+
+fn last(series: &Series, at: DateTime<FixedOffset>) -> Option<f64> {
+    let readings = series.readings();
+    readings.partition_point(|r| r.0 <= at).checked_sub(1).and_then(|i| readings.get(i)).map(|r| r.1)
+}
