@@ -8,6 +8,7 @@ use std::path::PathBuf;
 
 use approx::assert_abs_diff_eq;
 use demo::ashlar::{self, Cast, FAULTY, FOOT_M, Site};
+use demo::sorrel;
 use demo::water::{density_kg_m3, oxygen_saturation_mg_l};
 
 fn folder(site: &str) -> PathBuf {
@@ -27,21 +28,44 @@ fn ashlar() -> (Site, Vec<Cast>) {
 /// With `GATEMIX_WRITE_SITES=1` the files are written first.
 #[test]
 fn unchanged_ashlar_casts_match_their_generator() {
-    let profiles = folder("ashlar").join("profiles");
-    let made: BTreeMap<String, String> = ashlar().1.iter().map(ashlar::file).collect();
+    let casts = ashlar().1;
+    held(
+        "ashlar",
+        &casts.iter().map(ashlar::file).map(|(name, text)| (format!("profiles/{name}"), text)).collect(),
+    );
+}
+
+/// Every file of a site but `site.yaml` is one that was made, and holds what was made.
+fn held(site: &str, made: &BTreeMap<String, String>) {
+    let folder = folder(site);
     if std::env::var_os("GATEMIX_WRITE_SITES").is_some() {
-        std::fs::create_dir_all(&profiles).unwrap();
-        for (name, text) in &made {
-            std::fs::write(profiles.join(name), text).unwrap();
+        std::fs::create_dir_all(folder.join("profiles")).unwrap();
+        for (name, text) in made {
+            std::fs::write(folder.join(name), text).unwrap();
         }
     }
-    let names = std::fs::read_dir(&profiles).unwrap().map(|e| e.unwrap().file_name().into_string().unwrap());
-    let mut stored: Vec<String> = names.collect();
+    let names = |below: &str| {
+        let entries = std::fs::read_dir(folder.join(below)).unwrap().map(Result::unwrap);
+        let files = entries.filter(|entry| entry.file_type().unwrap().is_file());
+        files.map(|entry| format!("{below}{}", entry.file_name().into_string().unwrap())).collect::<Vec<_>>()
+    };
+    let mut stored = [names(""), names("profiles/")].concat();
+    stored.retain(|name| name != "site.yaml");
     stored.sort();
     assert_eq!(stored, made.keys().cloned().collect::<Vec<_>>());
-    for (name, text) in &made {
-        assert_eq!(&std::fs::read_to_string(profiles.join(name)).unwrap(), text, "{name}");
+    for (name, text) in made {
+        assert!(&std::fs::read_to_string(folder.join(name)).unwrap() == text, "{name}");
     }
+}
+
+/// The same of the second site, its weather and its stations.
+#[test]
+fn unchanged_sorrel_files_match_their_generator() {
+    let text = std::fs::read_to_string(folder("sorrel").join("site.yaml")).unwrap();
+    let site = sorrel::Site::read(&text);
+    let years = sorrel::years(&site);
+    let made: BTreeMap<String, String> = sorrel::files(&site, &years).into_iter().collect();
+    held("sorrel", &made);
 }
 
 /// The kinds of fault a careful reader would find in a cast, each once.

@@ -15,8 +15,22 @@ use super::water::density_kg_m3;
 const THINNEST_M: f64 = 0.6;
 /// Surface water an inflow takes along on its way down, as a share of itself.
 const ENTRAINED_SHARE: f64 = 0.4;
-/// Half thickness of the zone an outlet draws from, as a standard deviation, m.
-const ZONE_M: f64 = 5.0;
+
+/// In what pools differ, beside their shape.
+#[derive(Clone, Copy)]
+pub(crate) struct Nature {
+    /// Half thickness of the zone an outlet draws from, as a standard deviation, m.
+    pub(crate) zone_m: f64,
+    /// Loss of light with depth, 1/m.
+    pub(crate) light_loss_1_m: f64,
+    /// Demand for oxygen, in units of what a deep clear pool has.
+    pub(crate) demand: f64,
+}
+
+impl Nature {
+    /// A deep clear pool.
+    const DEEP: Self = Self { zone_m: 5.0, light_loss_1_m: 0.35, demand: 1.0 };
+}
 
 /// What a piece of water carries.
 #[derive(Clone, Copy)]
@@ -32,7 +46,7 @@ impl Water {
     }
 
     /// This water with the given share (0-1) of `other` in it.
-    fn blended(self, other: Self, share: f64) -> Self {
+    pub(crate) fn blended(self, other: Self, share: f64) -> Self {
         let blend = |a: f64, b: f64| a + share * (b - a);
         Self {
             temperature_c: blend(self.temperature_c, other.temperature_c),
@@ -71,16 +85,22 @@ impl Layer {
 pub(crate) struct Column<'a> {
     basin: &'a Basin,
     altitude_m: f64,
+    nature: Nature,
     layers: Vec<Layer>,
 }
 
 impl<'a> Column<'a> {
     /// One mixed water up to an elevation, m; `altitude_m` of elevation 0.
     pub(crate) fn mixed(basin: &'a Basin, altitude_m: f64, pool_m: f64, water: Water) -> Self {
-        let mut column =
-            Self { basin, altitude_m, layers: vec![Layer { volume_m3: basin.volume_m3(pool_m), water }] };
+        let layers = vec![Layer { volume_m3: basin.volume_m3(pool_m), water }];
+        let mut column = Self { basin, altitude_m, nature: Nature::DEEP, layers };
         column.even_out();
         column
+    }
+
+    /// The same pool with another nature.
+    pub(crate) fn with(self, nature: Nature) -> Self {
+        Self { nature, ..self }
     }
 
     /// Water in the pool, m3.
@@ -140,13 +160,30 @@ impl<'a> Column<'a> {
         self.layers[home] = self.layers[home].with(arriving);
     }
 
-    fn release(&mut self, volume_m3: f64, outlet_m: f64) {
+    /// The water an outlet at an elevation (m) gives.
+    pub(crate) fn drawn(&self, outlet_m: f64) -> Water {
+        let weights = self.weights(outlet_m);
+        let mut total = weights[0];
+        let mut water = self.layers[0].water;
+        for (layer, weight) in self.layers.iter().zip(weights).skip(1) {
+            total += weight;
+            water = water.blended(layer.water, weight / total);
+        }
+        water
+    }
+
+    /// What each layer gives to an outlet at an elevation (m), unscaled.
+    fn weights(&self, outlet_m: f64) -> Vec<f64> {
         let edges = self.edges_m();
         let weight = |(i, layer): (usize, &Layer)| {
-            let away = (f64::midpoint(edges[i], edges[i + 1]) - outlet_m) / ZONE_M;
+            let away = (f64::midpoint(edges[i], edges[i + 1]) - outlet_m) / self.nature.zone_m;
             layer.volume_m3 * (-0.5 * away * away).exp()
         };
-        let weights: Vec<f64> = self.layers.iter().enumerate().map(weight).collect();
+        self.layers.iter().enumerate().map(weight).collect()
+    }
+
+    fn release(&mut self, volume_m3: f64, outlet_m: f64) {
+        let weights = self.weights(outlet_m);
         let total: f64 = weights.iter().sum();
         for (layer, weight) in self.layers.iter_mut().zip(weights) {
             layer.volume_m3 -= volume_m3 * weight / total;

@@ -3,4 +3,7 @@
 pub(crate) mod ashlar;
 pub(crate) mod basin;
 pub(crate) mod column;
+pub(crate) mod record;
+pub(crate) mod season;
+pub(crate) mod sorrel;
 pub(crate) mod water;

@@ -1,12 +1,10 @@
 //! Weather, river and gates of the invented years, day by day.
 
-use std::f64::consts::TAU;
-
-use chrono::{Datelike, NaiveDate};
-use rand_distr::{Distribution, StandardNormal};
+use chrono::NaiveDate;
 use rand_pcg::Pcg32;
 
 use super::super::column::{Column, Forcing, Water};
+use super::super::season::{bell, fading, through, yearly};
 use super::super::water::oxygen_saturation_mg_l;
 use super::{CFS_M3S, FOOT_M, Site};
 
@@ -25,10 +23,7 @@ impl Weather {
 
     /// The next day's, each an autoregression whose variance stays 1.
     pub(super) fn next(&mut self) -> &Self {
-        let mut draw = |kept: f64, old: f64| {
-            let fresh: f64 = StandardNormal.sample(&mut self.random);
-            kept * old + (1.0 - kept * kept).sqrt() * fresh
-        };
+        let mut draw = |kept, old| fading(&mut self.random, kept, old);
         self.air = draw(0.8, self.air);
         self.wind = draw(0.4, self.wind);
         self.rain = draw(0.85, self.rain);
@@ -89,18 +84,5 @@ pub(super) fn rule_curve_ft(day: NaiveDate) -> f64 {
         (335.0, 1411.0),
         (367.0, 1411.0),
     ];
-    let x = f64::from(day.ordinal0());
-    let i = CURVE.partition_point(|&(at, _)| at <= x).min(CURVE.len() - 1);
-    let ((x0, low), (x1, high)) = (CURVE[i - 1], CURVE[i]);
-    low + (high - low) * (x - x0) / (x1 - x0)
-}
-
-/// The yearly harmonic: 1 on its peak day of the year, -1 half a year away.
-fn yearly(day: NaiveDate, peak: f64) -> f64 {
-    (TAU * (f64::from(day.ordinal0()) - peak) / 365.25).cos()
-}
-
-/// A bell over the days of the year: 1 at its peak, width as a standard deviation in days.
-fn bell(day: NaiveDate, peak: f64, width: f64) -> f64 {
-    (-0.5 * ((f64::from(day.ordinal0()) - peak) / width).powi(2)).exp()
+    through(&CURVE, day)
 }

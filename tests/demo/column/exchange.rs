@@ -8,9 +8,8 @@ const HEAT_CAPACITY_J_M3_C: f64 = 4.19e6;
 const DAY_S: f64 = 86400.0;
 /// Heat exchanged with the air per degree of departure from the equilibrium temperature, W/m2/C.
 const EXCHANGE_W_M2_C: f64 = 26.0;
-/// Share of the sun's heat that passes the first centimetres, and its loss with depth, 1/m.
+/// Share of the sun's heat that passes the first centimetres.
 const LIGHT_SHARE: f64 = 0.5;
-const LIGHT_LOSS_1_M: f64 = 0.35;
 /// Water-side friction velocity per wind speed: sqrt(1.2/1000 x 0.0013), air density and drag coefficient.
 const FRICTION_PER_WIND: f64 = 1.25e-3;
 /// Work of the wind that deepens the mixed layer, in units of rho u*^3; the literature spreads tenfold.
@@ -38,8 +37,9 @@ impl Column<'_> {
         let surface_m = edges[self.layers.len()];
         let through_w_m2 = LIGHT_SHARE * forcing.sun_w_m2;
         // light that meets the bed warms the layer lying there, so all that enters is taken up
-        let light_w =
-            |z_m: f64| through_w_m2 * self.basin.area_m2(z_m) * (-LIGHT_LOSS_1_M * (surface_m - z_m)).exp();
+        let light_w = |z_m: f64| {
+            through_w_m2 * self.basin.area_m2(z_m) * (-self.nature.light_loss_1_m * (surface_m - z_m)).exp()
+        };
         let mut gains_w: Vec<f64> = edges.windows(2).map(|e| light_w(e[1]) - light_w(e[0])).collect();
         gains_w[0] += light_w(edges[0]);
         if let (Some(gain_w), Some(top)) = (gains_w.last_mut(), self.layers.last()) {
@@ -126,21 +126,23 @@ impl Column<'_> {
         let top = self.layers.len() - 1;
         let surface_m = edges[top + 1];
         let before = self.layers.clone();
+        let nature = self.nature;
         for (i, layer) in self.layers.iter_mut().enumerate() {
             let water = layer.water;
             let (below, above) = (i.saturating_sub(1), (i + 1).min(top));
             let gradient_c_m = (before[above].water.temperature_c - before[below].water.temperature_c)
                 / (0.5 * (edges[above + 1] + edges[above] - edges[below + 1] - edges[below]));
             let bed_m2 = self.basin.area_m2(edges[i + 1]) - self.basin.area_m2(edges[i]);
-            let demand_mg_l_day = (WATER_DEMAND_MG_L_DAY
-                + BED_DEMAND_G_M2_DAY * bed_m2 / layer.volume_m3
-                + GRADIENT_DEMAND_MG_L_DAY * gradient_c_m.max(0.0))
+            let demand_mg_l_day = nature.demand
+                * (WATER_DEMAND_MG_L_DAY
+                    + BED_DEMAND_G_M2_DAY * bed_m2 / layer.volume_m3
+                    + GRADIENT_DEMAND_MG_L_DAY * gradient_c_m.max(0.0))
                 * DEMAND_PER_DEGREE.powf(water.temperature_c - 20.0)
                 * water.oxygen_mg_l
                 / (water.oxygen_mg_l + HALF_DEMAND_MG_L);
             let depth_m = surface_m - f64::midpoint(edges[i], edges[i + 1]);
             let made_mg_l_day =
-                PRODUCTION_MG_L_DAY * sun_w_m2 / FULL_SUN_W_M2 * (-LIGHT_LOSS_1_M * depth_m).exp();
+                PRODUCTION_MG_L_DAY * sun_w_m2 / FULL_SUN_W_M2 * (-nature.light_loss_1_m * depth_m).exp();
             layer.water.oxygen_mg_l += (made_mg_l_day - demand_mg_l_day) * days;
         }
         let area_m2 = self.basin.area_m2(surface_m);

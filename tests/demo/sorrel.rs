@@ -1,0 +1,175 @@
+//! Sorrel Dam on the Tamble River, both invented: weather by the hour, inflow and operation from the autumn of 2024 on,
+//! the casts taken from the dam meanwhile, and what stations below it recorded in the last season.
+//!
+//! The pool is the column of the other sites, given a shallow turbid pool's nature; the weather is harmonics with noise
+//! from a fixed seed, and the river below is stepped down by a heat budget and an oxygen balance of its own, so that a
+//! comparison of the program with these records is not one of the program with itself. Every number is a choice for a
+//! warm river at 38 degrees north and 210 m.
+
+pub(crate) mod heat;
+mod operation;
+mod river;
+mod stations;
+mod weather;
+
+use std::fmt::Write;
+
+use chrono::{NaiveDate, NaiveDateTime};
+use rand_distr::{Distribution, StandardNormal};
+use rand_pcg::Pcg32;
+use serde_yaml::Value;
+
+use super::basin::Basin;
+use super::column::{Column, Nature, Water};
+use operation::{Inflow, operate, rule_curve_m};
+pub(crate) use river::{Point, Reach};
+pub(crate) use weather::{Hour, Weather};
+
+/// The column runs from here, mixed as pools are in November.
+const FIRST_DAY: (i32, u32, u32) = (2024, 11, 10);
+const STEPS_A_DAY: u32 = 6;
+/// Days of forecast after the day of the newest cast.
+const FORECAST_DAYS: u64 = 10;
+/// Sensor noise as a standard deviation: C, mg/L, uS/cm.
+const NOISE: (f64, f64, f64) = (0.03, 0.06, 0.8);
+/// A shallow turbid pool over rich mud.
+const NATURE: Nature = Nature { zone_m: 2.2, light_loss_1_m: 0.7, demand: 1.5 };
+/// Times of all casts, local standard time, the newest last.
+const TAKEN: [&str; 14] = [
+    "2025-04-22T10:10",
+    "2025-05-20T09:55",
+    "2025-06-17T10:20",
+    "2025-07-08T09:40",
+    "2025-07-29T09:35",
+    "2025-08-19T10:05",
+    "2025-09-16T10:15",
+    "2025-10-21T10:40",
+    "2026-01-27T11:20",
+    "2026-04-21T10:00",
+    "2026-05-19T09:50",
+    "2026-06-16T09:45",
+    "2026-07-07T09:30",
+    "2026-07-28T09:40",
+];
+
+/// What the makers need to know of the site; read from its own file, so that the two cannot part.
+pub(crate) struct Site {
+    pub(crate) basin: Basin,
+    pub(crate) full_m: f64,
+    pub(crate) latitude: f64,
+    /// Centres of the well's ports, m, the highest first.
+    ports_m: Vec<f64>,
+    pub(crate) reaches: Vec<Reach>,
+    pub(crate) points: Vec<Point>,
+}
+
+impl Site {
+    /// From the text of `site.yaml`, lengths in metres, areas in km2.
+    pub(crate) fn read(text: &str) -> Self {
+        let site: Value = serde_yaml::from_str(text).unwrap();
+        let number = |value: &Value| value.as_f64().unwrap();
+        let rows = site["pool"]["table"].as_sequence().unwrap();
+        let outlets = site["outlets"].as_sequence().unwrap().iter();
+        let ports = outlets.filter(|outlet| outlet["well"].as_str() == Some("Tower"));
+        Self {
+            basin: Basin::new(rows.iter().map(|row| (number(&row[0]), 1e6 * number(&row[1])))),
+            full_m: number(&site["pool"]["full"]),
+            latitude: number(&site["place"]["latitude"]),
+            ports_m: ports.map(|port| number(&port["centre"])).collect(),
+            reaches: river::reaches(&site["river"]),
+            points: river::points(&site["river"]),
+        }
+    }
+}
+
+/// One cast: when, the pool (m) and its rows of depth (m) and what the sonde read there.
+pub(crate) struct Cast {
+    pub(crate) taken: NaiveDateTime,
+    pub(crate) pool_m: f64,
+    pub(crate) rows: Vec<(f64, Water)>,
+}
+
+/// One day of the dam.
+pub(crate) struct Day {
+    pub(crate) date: NaiveDate,
+    pub(crate) hours: [Hour; 24],
+    /// What left the dam, and how much, m3/s.
+    pub(crate) released: Water,
+    pub(crate) flow_m3s: f64,
+    /// What each port gave, m3/s, the highest first.
+    pub(crate) ports_m3s: Vec<f64>,
+    pub(crate) brook: Inflow,
+}
+
+/// All that happened: casts, oldest first, and every day.
+pub(crate) struct Years {
+    pub(crate) casts: Vec<Cast>,
+    pub(crate) days: Vec<Day>,
+}
+
+pub(crate) fn years(site: &Site) -> Years {
+    let times: Vec<NaiveDateTime> =
+        TAKEN.iter().map(|text| NaiveDateTime::parse_from_str(text, "%Y-%m-%dT%H:%M").unwrap()).collect();
+    let last = times[times.len() - 1].date() + chrono::Days::new(FORECAST_DAYS);
+    let (y, m, d) = FIRST_DAY;
+    let mut date = NaiveDate::from_ymd_opt(y, m, d).unwrap();
+    // two streams, so that one more cast leaves the weather as it is
+    let (mut weather, mut sensor) = (Weather::new(site.latitude), Pcg32::new(212, 2));
+    let autumn = Water { temperature_c: 13.0, oxygen_mg_l: 9.5, conductance_us_cm: 310.0 };
+    let mut column = Column::mixed(&site.basin, 0.0, rule_curve_m(date), autumn).with(NATURE);
+    let (mut casts, mut days) = (Vec::new(), Vec::new());
+    while date <= last {
+        let hours = weather.day(date);
+        let (forcing, day) = operate(site, &column, date, hours, &weather);
+        days.push(day);
+        for _ in 0..STEPS_A_DAY {
+            column.step(&forcing, 86400.0 / f64::from(STEPS_A_DAY));
+        }
+        for &taken in times.iter().filter(|taken| taken.date() == date) {
+            casts.push(sound(site, &column, taken, &mut sensor));
+        }
+        date = date.succ_opt().unwrap();
+    }
+    Years { casts, days }
+}
+
+/// Lowers the sonde: every metre, from just below the surface to just above the bed.
+fn sound(site: &Site, column: &Column, taken: NaiveDateTime, random: &mut Pcg32) -> Cast {
+    let pool_m = (100.0 * column.pool_m()).round() / 100.0;
+    let deepest_m = ((pool_m - site.basin.bed_m() - 0.5) * 10.0).floor() / 10.0;
+    let whole = (1..).map(f64::from).take_while(|&depth| depth < deepest_m - 0.3);
+    let mut noisy = |value: f64, deviation: f64| {
+        let draw: f64 = StandardNormal.sample(random);
+        value + deviation * draw
+    };
+    let rows = std::iter::once(0.2).chain(whole).chain([deepest_m]).map(|depth_m| {
+        let water = column.at(pool_m - depth_m);
+        let read = Water {
+            temperature_c: noisy(water.temperature_c, NOISE.0),
+            oxygen_mg_l: noisy(water.oxygen_mg_l, NOISE.1).max(0.0),
+            conductance_us_cm: noisy(water.conductance_us_cm, NOISE.2),
+        };
+        (depth_m, read)
+    });
+    Cast { taken, pool_m, rows: rows.collect() }
+}
+
+/// Every file beside `site.yaml`: its path in the folder and its text.
+pub(crate) fn files(site: &Site, years: &Years) -> Vec<(String, String)> {
+    let mut files: Vec<_> = years.casts.iter().map(cast_file).collect();
+    files.push(("weather.csv".into(), weather::file(years)));
+    files.extend(stations::files(site, years));
+    files
+}
+
+fn cast_file(cast: &Cast) -> (String, String) {
+    let mut text = String::from("# Sorrel Dam on the Tamble River: invented data of an invented place.\n");
+    writeln!(text, "# taken: {}", cast.taken.format("%Y-%m-%dT%H:%M")).unwrap();
+    writeln!(text, "# pool: {:.2} m", cast.pool_m).unwrap();
+    text.push_str("depth_m,temperature_C,oxygen_mg_l,specific_conductance_us_cm\n");
+    for (depth_m, water) in &cast.rows {
+        let (t, oxygen, conductance) = (water.temperature_c, water.oxygen_mg_l, water.conductance_us_cm);
+        writeln!(text, "{depth_m:.1},{t:.2},{oxygen:.2},{conductance:.0}").unwrap();
+    }
+    (format!("profiles/{}.csv", cast.taken.date()), text)
+}
