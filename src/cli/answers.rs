@@ -10,6 +10,7 @@ use crate::files::folder::{demonstration_files, demonstrations};
 use crate::mix::TargetStanding;
 use crate::problem::{Problem, any_refused, harmless};
 use crate::report::{json, text};
+use crate::tasks::rank::RankAsked;
 use crate::tasks::{self, Asked, Failure, Word};
 use crate::tui;
 use crate::units::System;
@@ -48,11 +49,7 @@ pub(super) fn answer(cli: &Cli, clock: DateTime<Utc>, progress: Progress) -> Res
         }
         Some(Command::Mix { common, set, open, release, strict }) => {
             let context = tasks::open(&common.asked(), clock)?;
-            let words: Vec<Word> = (set.iter().map(|text| Word::Set(text)))
-                .chain(open.iter().map(|text| Word::Open(text)))
-                .chain(release.iter().map(|text| Word::Release(text)))
-                .collect();
-            let answer = tasks::mix(&context, &words)?;
+            let answer = tasks::mix(&context, &setting_words(set, open, release.as_deref()))?;
             let shown = if common.json {
                 json::mix(&context, &answer)
             } else {
@@ -71,6 +68,21 @@ pub(super) fn answer(cli: &Cli, clock: DateTime<Utc>, progress: Progress) -> Res
             };
             let best = answer.mixes.first();
             let missed = best.is_none_or(|best| best.targets.iter().any(TargetStanding::missed));
+            (shown, strictly(*strict, missed))
+        }
+        Some(Command::River { common, set, open, release, strict }) => {
+            let context = tasks::open(&common.asked(), clock)?;
+            let alone = set.is_empty() && open.is_empty();
+            let words = if alone { Vec::new() } else { setting_words(set, open, release.as_deref()) };
+            let ranked = RankAsked { release: release.clone().filter(|_| alone), ..RankAsked::default() };
+            let answer = tasks::river::river(&context, &words, &ranked, &|done| progress.tell(done))?;
+            drop(progress);
+            let shown = if common.json {
+                json::river(&context, &answer)
+            } else {
+                common.color.of(&text::river(&context, &answer))
+            };
+            let missed = answer.spoken().is_none_or(|way| way.targets.iter().any(TargetStanding::missed));
             (shown, strictly(*strict, missed))
         }
         Some(Command::Check { site, json }) => {
@@ -94,6 +106,14 @@ pub(super) fn answer(cli: &Cli, clock: DateTime<Utc>, progress: Progress) -> Res
         }
     };
     Ok((shown.into_bytes(), end))
+}
+
+/// A setting as it was typed.
+fn setting_words<'a>(set: &'a [String], open: &'a [String], release: Option<&'a str>) -> Vec<Word<'a>> {
+    (set.iter().map(|text| Word::Set(text)))
+        .chain(open.iter().map(|text| Word::Open(text)))
+        .chain(release.map(Word::Release))
+        .collect()
 }
 
 /// A lone word that is neither a path nor a demonstration site was meant as a command.

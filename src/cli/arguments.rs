@@ -55,7 +55,24 @@ pub(super) enum Command {
         #[arg(long)]
         strict: bool,
     },
-    /// Are my files sound? Every problem of the site file and of every cast.
+    /// What arrives downstream, and what release would each point need?
+    River {
+        #[command(flatten)]
+        common: Common,
+        /// A gate and its flow, as `mix` takes it; repeat for each. Without any setting, the one now.
+        #[arg(long = "set", value_name = "GATE=FLOW")]
+        set: Vec<String>,
+        /// A gate and its opening, as `mix` takes it; its well decides the flow.
+        #[arg(long = "open", value_name = "GATE=OPENING")]
+        open: Vec<String>,
+        /// What the well of the gates opened carries; without a setting, the total release the best is ranked at.
+        #[arg(long, value_name = "FLOW")]
+        release: Option<String>,
+        /// Exit with 4 when a target is missed.
+        #[arg(long)]
+        strict: bool,
+    },
+    /// Are my files sound? Every problem of the site file, of every cast and of every series.
     Check {
         /// Site folder.
         site: String,

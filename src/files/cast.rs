@@ -106,7 +106,8 @@ impl Column {
 }
 
 /// Values that loggers write for "no reading".
-const SENTINELS: [f64; 9] = [-99.0, -99.9, -99.99, -999.0, -999.9, -999.99, -9999.0, -9999.9, -99999.0];
+pub(super) const SENTINELS: [f64; 9] =
+    [-99.0, -99.9, -99.99, -999.0, -999.9, -999.99, -9999.0, -9999.9, -99999.0];
 
 /// Whether a number is one that loggers write for "no reading".
 pub(super) fn is_sentinel(value: f64) -> bool {

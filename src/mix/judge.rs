@@ -5,6 +5,7 @@ use chrono::NaiveDate;
 use crate::intake;
 use crate::problem::Problem;
 use crate::profile::{Column, Profile};
+use crate::river::AtPoint;
 use crate::site::{Outlet, Site};
 use crate::units::{Dimension, say};
 use crate::withdrawal::CrestForm;
@@ -12,9 +13,11 @@ use crate::withdrawal::CrestForm;
 use super::band::{Perturbed, Spread};
 use super::beware;
 use super::blend::{Blend, Drawn, draw_levels, release};
+use super::conflict::Conflict;
+use super::day::Day;
 use super::levels::{Gate, Setting, groups, levels};
 use super::limits::{self, Check, Of, Rule, Whole};
-use super::standing::{TargetStanding, standings};
+use super::standing::{Held, TargetStanding, held};
 
 /// Flow over an ungated crest set by hand may differ from its rating by this share (choice).
 const CREST_SHARE: f64 = 0.05;
@@ -30,6 +33,10 @@ pub struct Mix {
     pub spread: Spread,
     /// Standing against every target valid on the date.
     pub targets: Vec<TargetStanding>,
+    /// Hard targets that leave nothing in common.
+    pub conflicts: Vec<Conflict>,
+    /// What arrives at the points of the river that targets speak of.
+    pub points: Vec<AtPoint>,
     /// Every limit that applies, kept or broken.
     pub limits: Vec<Check>,
     /// Limits that nobody gave or that what is known does not reach.
@@ -109,17 +116,19 @@ pub fn judge(
     profile: &Profile,
     perturbed: &Perturbed,
     setting: &Setting,
-    date: NaiveDate,
+    day: impl Into<Day>,
 ) -> Option<Mix> {
+    let day: Day = day.into();
     let column = &profile.column;
     let groups = groups(site);
     let drawn =
         draw_levels(column, &levels(site, &groups, setting, profile.pool_m, 0.5, CrestForm::Overflow), 1.0);
     let release = release(&drawn)?;
     let spread = perturbed.spread(site, &groups, setting, &release);
-    let targets = standings(site, &[(1.0, &release, &spread)], date);
-    let limits = limits(site, column, setting, profile.pool_m, date, &drawn, &release);
+    let Held { targets, conflicts, points, flags } = held(site, &[(1.0, &release, &spread)], &day);
+    let limits = limits(site, column, setting, profile.pool_m, day.date, &drawn, &release);
     let mut warnings: Vec<Problem> = broken(site, &limits).collect();
+    warnings.extend(conflicts.iter().map(|conflict| conflict.problem(site)));
     beware::zones(site, column, &drawn, &mut warnings);
     beware::overlaps(column, &drawn, &release, &mut warnings);
     beware::oxygen(site, &drawn, &release, &spread, &mut warnings);
@@ -128,8 +137,9 @@ pub fn judge(
     beware::wells(site, &groups, setting, profile.pool_m, &mut warnings);
     beware::vortices(site, setting, profile.pool_m, &mut warnings);
     beware::cautions(site, column, &drawn, &mut warnings);
+    warnings.extend(flags);
     let not_checked = limits::not_checked(site, column, setting, &drawn, &limits);
-    Some(Mix { levels: drawn, release, spread, targets, limits, not_checked, warnings })
+    Some(Mix { levels: drawn, release, spread, targets, conflicts, points, limits, not_checked, warnings })
 }
 
 /// Every limit that applies to a setting, by the names of outlets and wells.

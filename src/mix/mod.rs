@@ -3,15 +3,23 @@
 mod band;
 mod beware;
 mod blend;
+mod conflict;
+mod day;
 mod judge;
 mod levels;
 pub mod limits;
+mod links;
+mod place;
 mod standing;
 mod wells;
 
 pub use band::{GREATEST_LOSS, LEAST_LOSS, Member, Perturbed, Spread, members};
 pub use blend::{Blend, Drawn, blend, draw_levels, overlapping, release, release_joined};
+pub use conflict::{Conflict, conflicts};
+pub use day::{Day, RuleToday, reference_days};
 pub use judge::{Mix, judge, refusals};
 pub use levels::{Gate, Level, Seat, Setting, as_one, groups, levels, seat};
-pub use standing::{Part, TargetStanding, standings};
+pub use links::Links;
+pub use place::saturation_below_mg_l;
+pub use standing::{Held, Part, TargetStanding, held, is_wish, standings};
 pub use wells::{Asked, WellState, port, resolve};

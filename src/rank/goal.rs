@@ -2,10 +2,12 @@
 //!
 //! Methods: `docs/methods.md`, section 10.
 
-use chrono::NaiveDate;
-
+use crate::mix::{RuleToday, is_wish};
 use crate::site::{Bins, Site};
-use crate::target::{Statistic, Target};
+use crate::target::{Figure, OxygenFigure, Today};
+
+use super::Question;
+use super::afar::{Afar, Seen};
 
 /// A criterion of the order.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -72,6 +74,9 @@ const HOUR_STEP: f64 = 0.25;
 /// A miss smaller than this is none, C and mg/L: round-off of a blend.
 const ROUND_OFF: f64 = 1e-9;
 
+/// Oxygen beyond any floor, mg/L (choice).
+const PLENTY_MG_L: f64 = 1e12;
+
 /// What is wanted of one statistic of the release.
 #[derive(Debug, Clone, Copy)]
 struct Wanted {
@@ -90,14 +95,17 @@ impl Wanted {
         floor: f64::NEG_INFINITY,
     };
 
-    fn add(&mut self, rule: &Target) {
-        self.low = self.low.max(rule.low_kept_c().unwrap_or(f64::NEG_INFINITY));
-        self.high = self.high.min(rule.high_kept_c().unwrap_or(f64::INFINITY));
+    /// Adds what a rule asks of today; a wish only draws the preferred temperature near.
+    fn add(&mut self, today: &Today, wish: bool) {
+        let low = today.low_asked_c();
+        if !wish {
+            self.low = self.low.max(low.unwrap_or(f64::NEG_INFINITY));
+            self.high = self.high.min(today.high_c.unwrap_or(f64::INFINITY));
+        }
         // where none is preferred, every temperature of the range is
-        let preferred = [rule.preferred_c.or(rule.high_kept_c()), rule.preferred_c.or(rule.low_kept_c())];
+        let preferred = [today.preferred_c.or(today.high_c), today.preferred_c.or(low)];
         self.preferred.0 = self.preferred.0.min(preferred[0].unwrap_or(f64::INFINITY));
         self.preferred.1 = self.preferred.1.max(preferred[1].unwrap_or(f64::NEG_INFINITY));
-        self.floor = self.floor.max(rule.oxygen_min_mg_l.unwrap_or(f64::NEG_INFINITY));
     }
 }
 
@@ -128,8 +136,10 @@ impl<const N: usize> Default for Days<N> {
 /// The rules valid on a date and the order asked for, made ready for many mixes.
 #[derive(Debug, Clone)]
 pub(super) struct Goal {
-    /// By mean, greatest and least of the day.
+    /// By mean, greatest and least of the day, at the dam.
     wanted: [Wanted; 3],
+    /// What is wanted elsewhere, or depends on the temperature.
+    afar: Afar,
     has_floor: bool,
     per_c: f64,
     per_mg_l: f64,
@@ -139,20 +149,35 @@ pub(super) struct Goal {
 }
 
 impl Goal {
-    /// The rules of a site valid on a date, judged in an order. Rules for other points than the dam are left out.
-    /// Every statistic of a steady day is held against its one temperature.
-    pub(super) fn new(site: &Site, date: NaiveDate, order: &[Criterion], steady: bool) -> Self {
+    /// What the rules valid on the day of a question ask, judged in its order. Every statistic of a steady day is held
+    /// against its one temperature at the dam.
+    pub(super) fn new(question: &Question) -> Self {
+        let (site, order) = (question.site, question.order);
+        let steady = question.blocks.len() == 1;
+        let seen = Seen::of(question);
         let mut wanted = [Wanted::NOTHING; 3];
-        for rule in site.targets.iter().filter(|t| t.span.contains(date) && t.point == "dam") {
-            let by: &[usize] = match rule.statistic {
-                _ if steady => &[0],
-                Statistic::Instantaneous => &[1, 2],
-                Statistic::DailyMin => &[2],
-                Statistic::DailyMax | Statistic::SevenDayMeanOfMaxima => &[1],
-                _ => &[0],
-            };
-            for &i in by {
-                wanted[i].add(rule);
+        let mut afar = Afar::default();
+        let rules = question.day.rules(site);
+        let conflicts = seen.conflicts(site, &rules);
+        for rule in rules.iter() {
+            let wish = is_wish(site, rule.target, &conflicts);
+            let RuleToday { point, today, air, .. } = rule;
+            match (point, today) {
+                (None, Ok(today)) => {
+                    for &i in at_dam(today.figure, steady) {
+                        wanted[i].add(today, wish);
+                    }
+                }
+                (Some(point), Ok(today)) => afar.bound(&seen, *point, today, wish),
+                (_, Err(_)) => {}
+            }
+            match air.filter(|_| !wish) {
+                Some(air) if point.is_none() && !air.share => {
+                    let i = usize::from(!steady && air.figure == OxygenFigure::Min);
+                    wanted[i].floor = wanted[i].floor.max(air.floor);
+                }
+                Some(air) => afar.floor(&seen, *point, air, steady),
+                None => {}
             }
         }
         let Bins { temperature_c, oxygen_mg_l, cold_share } = site.bins;
@@ -163,8 +188,9 @@ impl Goal {
             weight *= criterion.steps();
         }
         Self {
-            has_floor: wanted.iter().any(|w| w.floor > f64::NEG_INFINITY),
+            has_floor: wanted.iter().any(|w| w.floor > f64::NEG_INFINITY) || afar.has_floor(),
             wanted,
+            afar,
             per_c: 1.0 / temperature_c,
             per_mg_l: 1.0 / oxygen_mg_l,
             per_share: 1.0 / cold_share,
@@ -183,6 +209,7 @@ impl Goal {
                 out[i] = most(most(out[i], low[i] - w.preferred.0), w.preferred.1 - high[i]);
             }
         }
+        self.afar.distances_c(days, &mut out);
         out
     }
 
@@ -203,6 +230,8 @@ impl Goal {
                 short[i] = most(short[i], w.floor - oxygen[i]);
             }
         }
+        self.afar.outside_c(days, &mut range);
+        self.afar.short_mg_l(days, &mut short);
         let [w_oxygen, w_range, w_far, w_cold, w_moves] = self.weights;
         let mut key = [0.0; N];
         // a miss of part of a bin is a whole one; one step is kept for oxygen that is not known
@@ -232,7 +261,7 @@ impl Goal {
         days: &Days<N>,
         distances_c: &[f64; N],
     ) -> [f64; N] {
-        let told = Days { oxygen_mg_l: [[f64::INFINITY; N]; 2], ..days.clone() };
+        let told = Days { oxygen_mg_l: [[PLENTY_MG_L; N]; 2], ..days.clone() };
         let unknown = if self.has_floor { self.weights[0] } else { 0.0 };
         self.keys::<N, S>(&told, distances_c).map(|key| key + unknown)
     }
@@ -263,9 +292,22 @@ impl Efforts {
     }
 }
 
+/// Which of mean, greatest and least of the day a figure at the dam is.
+fn at_dam(figure: Figure, steady: bool) -> &'static [usize] {
+    match figure {
+        // shown with every mix, and not ordered by
+        Figure::HourlyChange => &[],
+        _ if steady => &[0],
+        Figure::Both => &[1, 2],
+        Figure::Min => &[2],
+        Figure::Max => &[1],
+        Figure::Mean => &[0],
+    }
+}
+
 /// The larger of two numbers that are numbers.
 #[inline]
-fn most(a: f64, b: f64) -> f64 {
+pub(super) fn most(a: f64, b: f64) -> f64 {
     if a > b { a } else { b }
 }
 

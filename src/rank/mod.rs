@@ -2,6 +2,7 @@
 //!
 //! Methods: `docs/methods.md`, section 10.
 
+mod afar;
 mod arrange;
 mod choices;
 mod curve;
@@ -17,11 +18,9 @@ mod tries;
 mod units;
 mod whole;
 
-use chrono::NaiveDate;
-
 use crate::intake;
 use crate::mix::limits::{self, Before, Of, Rule};
-use crate::mix::{Setting, groups};
+use crate::mix::{Day, Setting, groups};
 use crate::problem::Problem;
 use crate::profile::Profile;
 use crate::site::Site;
@@ -56,8 +55,8 @@ pub struct Question<'a> {
     pub site: &'a Site,
     /// The water before it.
     pub profile: &'a Profile,
-    /// The day.
-    pub date: NaiveDate,
+    /// The day, with what is known around the river.
+    pub day: &'a Day,
     /// Parts of the day: share of it, and total release, m3/s. One part for a steady day.
     pub blocks: &'a [(f64, f64)],
     /// What is set now, where it is known.
@@ -146,7 +145,7 @@ pub fn rank(question: &Question, progress: Progress) -> Result<Ranking, Stopped>
             "take a coarser --step, give max_open of the wells, or leave gates out with --without",
         )));
     }
-    let goal = Goal::new(site, question.date, question.order, question.blocks.len() == 1);
+    let goal = Goal::new(question);
     let task = Task {
         units: &offers.choices,
         levels: &levels,

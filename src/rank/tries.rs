@@ -86,7 +86,7 @@ impl Kitchen<'_> {
                 outlet,
                 opening,
                 self.question.profile.pool_m,
-                self.question.date,
+                self.question.day.date,
                 &mut checks,
             );
         }

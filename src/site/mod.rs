@@ -264,6 +264,12 @@ impl Site {
         self.wells.iter().position(|w| w.name == name)
     }
 
+    /// Targets valid on a date, each with its index.
+    pub fn targets_on(&self, date: NaiveDate) -> impl Iterator<Item = (usize, &Target)> {
+        let year_type = self.year_type.as_deref();
+        self.targets.iter().enumerate().filter(move |(_, rule)| rule.valid_on(date, year_type))
+    }
+
     /// Air pressure at the water surface, atm; at sea level where the altitude is not known.
     pub fn surface_pressure_atm(&self, pool_m: f64) -> f64 {
         self.place.altitude_m.map_or(1.0, |altitude| crate::water::pressure_atm(altitude + pool_m))

@@ -211,20 +211,46 @@ pub struct RawTarget {
     pub to: Option<String>,
     /// Statistic, by name.
     pub statistic: Option<String>,
-    /// Low, C.
+    /// Days the statistic speaks of.
+    pub days: Option<usize>,
+    /// Share of days it speaks of, 0 to 1.
+    pub days_share: Option<f64>,
+    /// Base of degree days, C.
+    pub base_c: Option<f64>,
+    /// First day that counts to them, `MM-DD`.
+    pub since: Option<String>,
+    /// Low, C; a difference or C days where the rule is of those.
     pub low_c: Option<f64>,
-    /// Preferred, C.
+    /// Preferred, likewise.
     pub preferred_c: Option<f64>,
-    /// High, C.
+    /// High, likewise.
     pub high_c: Option<f64>,
     /// Buffer, C.
     pub buffer_c: Option<f64>,
     /// Least oxygen, mg/L.
     pub oxygen_min_mg_l: Option<f64>,
+    /// Least oxygen over saturation, 0 to 1 and above.
+    pub oxygen_min_share: Option<f64>,
+    /// Statistic of the oxygen, by name.
+    pub oxygen_statistic: Option<String>,
     /// Point.
     pub point: Option<String>,
+    /// What the temperature is held against: `natural` or a name.
+    pub reference: Option<String>,
+    /// Types of water year.
+    pub years: Vec<String>,
+    /// Date or event that ends it.
+    pub until: Option<String>,
+    /// A wish.
+    pub soft: bool,
+    /// 1 comes first.
+    pub priority: Option<usize>,
+    /// Who set it.
+    pub authority: Option<String>,
     /// Source of the rule.
     pub source: Option<String>,
+    /// Its values are an example.
+    pub example: Option<bool>,
 }
 
 /// Site as read. What is `None` or empty was not given.
@@ -270,6 +296,10 @@ pub struct Raw {
     pub now: Vec<(String, RawNow)>,
     /// Targets.
     pub targets: Vec<RawTarget>,
+    /// Type of the water year.
+    pub year_type: Option<String>,
+    /// Events with their dates, `YYYY-MM-DD`; without one where it has not come yet.
+    pub events: Vec<(String, Option<String>)>,
     /// Cold-water thresholds, C.
     pub cold_water_c: Vec<f64>,
     /// Water chemistry.

@@ -8,10 +8,12 @@ mod span;
 mod standing;
 mod statistic;
 mod tally;
+mod today;
 
 pub use observed::{Observed, observed};
 pub use rule::{DAM, Reference, Target};
 pub use span::{Span, YearDay};
 pub use standing::Standing;
-pub use statistic::{OxygenStatistic, Statistic};
+pub use statistic::{OxygenFigure, OxygenStatistic, Statistic};
 pub use tally::{Held, Mark, Tally};
+pub use today::{Air, Basis, Count, Figure, Known, Today, today};

@@ -5,9 +5,9 @@
 use chrono::NaiveDate;
 
 use crate::problem::Problem;
-use crate::units::say;
+use crate::units::{Dimension, say};
 
-use super::{OxygenStatistic, Span, Standing, Statistic};
+use super::{OxygenFigure, OxygenStatistic, Span, Standing, Statistic};
 
 /// The name of the dam among the points.
 pub const DAM: &str = "dam";
@@ -95,16 +95,49 @@ pub enum Reference {
 }
 
 impl Target {
-    /// What the rule is held against of temperatures that each hold for a share of the day, C: its statistic, and of
-    /// readings that are each to lie in the range the one farthest outside.
-    pub fn value_over(&self, parts: &[(f64, f64)]) -> f64 {
-        let greatest = self.statistic.over(parts);
-        if self.statistic != Statistic::Instantaneous {
-            return greatest;
+    /// Whether it is valid on a date in a water year of a type: within its span, in one of its types of year, and not
+    /// after the event that ends it. That event ends only the span it falls in: the next year begins anew.
+    pub fn valid_on(&self, date: NaiveDate, year_type: Option<&str>) -> bool {
+        let year = self.years.is_empty() || year_type.is_some_and(|t| self.years.iter().any(|y| y == t));
+        let ended =
+            self.until.is_some_and(|until| date > until && self.span.began(date) == self.span.began(until));
+        year && !ended && self.span.contains(date)
+    }
+
+    /// Whether its range bounds a temperature: not a difference, not a sum of degrees.
+    pub fn is_of_temperature(&self) -> bool {
+        self.reference.is_none() && !self.statistic.is_difference() && !self.statistic.is_sum()
+    }
+
+    /// What its range measures.
+    pub fn dimension(&self) -> Dimension {
+        if self.is_of_temperature() { Dimension::Temperature } else { Dimension::TemperatureDifference }
+    }
+
+    /// Whether it sets a range.
+    pub fn has_range(&self) -> bool {
+        self.low_c.is_some() || self.high_c.is_some()
+    }
+
+    /// Whether it sets a floor of oxygen.
+    pub fn has_floor(&self) -> bool {
+        self.oxygen_min_mg_l.is_some() || self.oxygen_min_share.is_some()
+    }
+
+    /// What its floor of oxygen speaks of; where nothing is said, the mean of the day for a daily mean, else the least.
+    pub fn oxygen_statistic(&self) -> OxygenStatistic {
+        self.oxygen_statistic.unwrap_or(match self.statistic {
+            Statistic::DailyMean => OxygenStatistic::DailyMean,
+            _ => OxygenStatistic::DailyMin,
+        })
+    }
+
+    /// Which of today's oxygen its floor is held against.
+    pub fn oxygen_figure(&self) -> OxygenFigure {
+        match self.oxygen_statistic() {
+            OxygenStatistic::DailyMean => OxygenFigure::Mean,
+            _ => OxygenFigure::Min,
         }
-        let least = Statistic::DailyMin.over(parts);
-        let outside = |value: f64| self.temperature(Some(value)).1.unwrap_or(0.0);
-        if outside(least) > outside(greatest) { least } else { greatest }
     }
 
     /// Lower end of the range the buffer leaves, C.
@@ -137,21 +170,16 @@ impl Target {
         }
     }
 
-    /// Room to the nearest bound, negative outside, in C for temperature and mg/L for oxygen taken as equal
-    /// (choice: bins of both are 0.5). `None` where no bound can be judged.
-    pub fn room(&self, value_c: Option<f64>, oxygen_mg_l: Option<f64>) -> Option<f64> {
-        let temperature = value_c.and_then(|v| {
-            let low = self.low_kept_c().map(|low| v - low);
-            let high = self.high_kept_c().map(|high| high - v);
-            [low, high].into_iter().flatten().reduce(f64::min)
-        });
-        let oxygen = oxygen_mg_l.zip(self.oxygen_min_mg_l).map(|(v, least)| v - least);
-        [temperature, oxygen].into_iter().flatten().reduce(f64::min)
-    }
-
     /// What is wrong with the rule itself; each problem at `path`.
     pub fn problems(&self, path: &str) -> Vec<Problem> {
         let mut out = Vec::new();
+        let said = |value: f64| {
+            if self.is_of_temperature() {
+                say::c(value, 2).to_string()
+            } else {
+                say::dc(value, 2).to_string()
+            }
+        };
         let mut refuse = |key: &str, words: String, cure: &str| {
             out.push(Problem::refused("target-range", words, cure).at(format!("{path}.{key}")));
         };
@@ -160,7 +188,7 @@ impl Target {
         {
             refuse(
                 "low",
-                format!("low {} is above high {}, the buffer counted in", say::c(low, 2), say::c(high, 2)),
+                format!("low {} is above high {}, the buffer counted in", said(low), said(high)),
                 "swap low and high, or make the buffer smaller",
             );
         }
@@ -170,7 +198,7 @@ impl Target {
             if out_of {
                 refuse(
                     "preferred",
-                    format!("preferred {} lies outside low to high", say::c(preferred, 2)),
+                    format!("preferred {} lies outside low to high", said(preferred)),
                     "move it between low and high",
                 );
             }
@@ -182,8 +210,9 @@ impl Target {
                 "give 0 or more",
             );
         }
-        if self.low_c.is_none() && self.high_c.is_none() && self.oxygen_min_mg_l.is_none() {
-            refuse("name", "the target sets no bound".into(), "give at least one of low, high, oxygen_min");
+        if !self.has_range() && !self.has_floor() {
+            let cure = "give at least one of low, high, oxygen_min, oxygen_min_percent";
+            refuse("name", "the target sets no bound".into(), cure);
         }
         out
     }

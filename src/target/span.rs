@@ -24,6 +24,15 @@ impl YearDay {
         let (month, day) = (month.parse().ok()?, day.parse().ok()?);
         NaiveDate::from_ymd_opt(2024, month, day).map(|_| Self { month, day })
     }
+
+    /// The last time it came on or before a date; 29 February comes on 1 March where there is none.
+    pub fn last_on(self, date: NaiveDate) -> Option<NaiveDate> {
+        let in_year = |year: i32| {
+            NaiveDate::from_ymd_opt(year, self.month, self.day)
+                .or_else(|| NaiveDate::from_ymd_opt(year, 3, 1))
+        };
+        in_year(date.year()).filter(|day| *day <= date).or_else(|| in_year(date.year() - 1))
+    }
 }
 
 /// Days of the year from `from` to `to`, both included; `to` before `from` wraps over New Year.
@@ -47,5 +56,11 @@ impl Span {
         } else {
             day >= self.from || day <= self.to
         }
+    }
+
+    /// The day on which the span that holds a date, or the last one before it, began. A span from 29 February begins on
+    /// 1 March where there is none.
+    pub fn began(&self, date: NaiveDate) -> Option<NaiveDate> {
+        self.from.last_on(date)
     }
 }

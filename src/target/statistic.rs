@@ -2,6 +2,8 @@
 //!
 //! Methods: `docs/methods.md`, section 7.
 
+use crate::units::say;
+
 use super::{Span, YearDay};
 
 /// The statistic over time that a rule speaks of.
@@ -78,29 +80,88 @@ impl Statistic {
         Self::NAMES.iter().find(|(n, _)| *n == name).map(|(_, s)| *s)
     }
 
-    /// The statistic of temperatures that each hold for a share of the day, C; the shares sum to 1. One temperature all
-    /// day is itself by every statistic.
-    pub fn over(self, parts: &[(f64, f64)]) -> f64 {
-        let values = parts.iter().map(|p| p.1);
+    /// Whether its figures are differences of temperature.
+    pub fn is_difference(self) -> bool {
+        matches!(self, Self::HourlyChange | Self::DailyChange)
+    }
+
+    /// Whether its figures are sums of degrees, C days.
+    pub fn is_sum(self) -> bool {
+        matches!(self, Self::DegreeDays { .. })
+    }
+
+    /// Whether it counts days above the range.
+    pub fn counts_days(self) -> bool {
+        matches!(self, Self::DaysInARow(_) | Self::ShareOfDays(_) | Self::DaysAbove(_))
+    }
+
+    /// As a sentence names it, its figures with it; a base of degree days as [`say`](crate::units::say) marks it.
+    pub fn words(self) -> String {
         match self {
-            Self::DailyMean | Self::MeanOfDays(_) | Self::DailyChange | Self::DegreeDays { .. } => {
-                mean(parts)
+            Self::SevenDayMeanOfMaxima => "7-day mean of daily maxima".into(),
+            Self::MeanOfDays(days) => format!("mean of {days} days"),
+            Self::DaysInARow(days) => format!("daily maximum, not {days} days in a row above"),
+            Self::ShareOfDays(share) => {
+                format!("daily maximum, on at most {} % of days above", tidy(100.0 * share))
             }
-            Self::DailyMin => values.fold(f64::INFINITY, f64::min),
-            _ => values.fold(f64::NEG_INFINITY, f64::max),
+            Self::DaysAbove(days) => format!("daily maximum, on at most {days} days above"),
+            Self::DegreeDays { base_c, since } => {
+                format!("degree days above {} since {:02}-{:02}", say::c(base_c, 1), since.month, since.day)
+            }
+            _ => self.name().replace('_', " "),
         }
     }
 
-    /// The same of oxygen, mg/L: what the floor is held against is the mean where the rule speaks of one, else the
-    /// least.
-    pub fn oxygen_over(self, parts: &[(f64, f64)]) -> f64 {
+    /// The unit of its own figure.
+    pub fn unit(self) -> &'static str {
         match self {
-            Self::DailyMean => mean(parts),
-            _ => parts.iter().map(|p| p.1).fold(f64::INFINITY, f64::min),
+            Self::DaysInARow(_) | Self::DaysAbove(_) => "days",
+            Self::ShareOfDays(_) => "%",
+            Self::DegreeDays { .. } => "C days",
+            _ => "C",
         }
     }
 }
 
-fn mean(parts: &[(f64, f64)]) -> f64 {
-    parts.iter().map(|(share, value)| share * value).sum()
+/// A figure without needless zeros.
+fn tidy(value: f64) -> String {
+    let text = format!("{value:.1}");
+    text.strip_suffix(".0").map_or(text.clone(), str::to_owned)
+}
+
+impl OxygenStatistic {
+    /// All of them with the names used in files.
+    pub const NAMES: [(&'static str, Self); 3] = [
+        ("daily_min", Self::DailyMin),
+        ("daily_mean", Self::DailyMean),
+        ("7dmin", Self::SevenDayMeanOfMinima),
+    ];
+
+    /// The name used in files.
+    pub fn name(self) -> &'static str {
+        Self::NAMES.iter().find(|(_, s)| *s == self).map_or("", |(n, _)| n)
+    }
+
+    /// The statistic of a name.
+    pub fn parse(name: &str) -> Option<Self> {
+        Self::NAMES.iter().find(|(n, _)| *n == name).map(|(_, s)| *s)
+    }
+
+    /// As a sentence names it.
+    pub fn words(self) -> &'static str {
+        match self {
+            Self::DailyMin => "least",
+            Self::DailyMean => "daily mean",
+            Self::SevenDayMeanOfMinima => "7-day mean of daily minima",
+        }
+    }
+}
+
+/// Which of today's oxygen a floor is held against.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum OxygenFigure {
+    /// The mean of the day.
+    Mean,
+    /// The least of the day.
+    Min,
 }

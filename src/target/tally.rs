@@ -68,7 +68,7 @@ pub(super) fn held(span: &Span, days: Vec<(NaiveDate, Mark)>) -> Held {
     let mut runs = [(); 3].map(|()| Run::default());
     for (date, mark) in &days {
         let month = (date.year(), date.month());
-        let season = span.began(*date).year();
+        let season = span.began(*date).unwrap_or(*date).year();
         let tallies =
             [&mut out.all, out.months.entry(month).or_default(), out.seasons.entry(season).or_default()];
         let groups = [(0, 0), (month.0, month.1), (season, 0)];

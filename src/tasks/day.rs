@@ -1,6 +1,6 @@
 //! A day of several blocks: gates that stand still while the release changes.
 
-use crate::mix::{Mix, Perturbed, Setting, TargetStanding, judge, standings};
+use crate::mix::{Held, Mix, Perturbed, Setting, held, judge};
 use crate::problem::Problem;
 
 use super::setting::given;
@@ -33,8 +33,8 @@ pub struct DayAnswer {
     pub by_flow_c: f64,
     /// Oxygen by time, mg/L.
     pub time_mean_mg_l: Option<f64>,
-    /// Standings over the day.
-    pub targets: Vec<TargetStanding>,
+    /// Standings over the day, and what arrives at the points.
+    pub held: Held,
 }
 
 /// The site's blocks under openings alone, where it has any and no release is given; the openings are then held all
@@ -53,20 +53,19 @@ pub(super) fn day(
     if site.blocks.is_empty() || !by_opening {
         return Ok(None);
     }
-    let mut notes = Vec::new();
+    let (mut notes, of_day) = (Vec::new(), context.day());
     let mut blocks = Vec::new();
     for (block, of) in site.blocks.iter().enumerate() {
         let of_block = Given { release_m3s: Some(of.flow_m3s), ..asked.clone() };
         let understood = given(context, &of_block)?;
         notes = understood.notes;
-        let date = context.on.date_naive();
-        let Some(mix) = judge(site, &context.profile, perturbed, &understood.setting, date) else {
+        let Some(mix) = judge(site, &context.profile, perturbed, &understood.setting, &of_day) else {
             return Ok(None);
         };
         blocks.push(BlockAnswer { block, share: of.hours / 24.0, setting: understood.setting, mix });
     }
     let parts: Vec<_> = blocks.iter().map(|b| (b.share, &b.mix.release, &b.mix.spread)).collect();
-    let targets = standings(site, &parts, context.on.date_naive());
+    let held = held(site, &parts, &of_day);
     let temperatures = || blocks.iter().map(|b| b.mix.release.temperature_c);
     let flow = |b: &BlockAnswer| b.share * b.mix.release.flow_m3s;
     let answer = DayAnswer {
@@ -78,7 +77,7 @@ pub(super) fn day(
         by_flow_c: blocks.iter().map(|b| flow(b) * b.mix.release.temperature_c).sum::<f64>()
             / blocks.iter().map(flow).sum::<f64>(),
         time_mean_mg_l: blocks.iter().map(|b| Some(b.share * b.mix.release.oxygen_mg_l?)).sum(),
-        targets,
+        held,
         blocks,
     };
     Ok(Some((answer, notes)))

@@ -74,8 +74,7 @@ fn answer(
     day: Option<DayAnswer>,
 ) -> Result<MixAnswer, Failure> {
     let site = context.site();
-    let date = context.on.date_naive();
-    let judged = judge(site, &context.profile, perturbed, &understood.setting, date);
+    let judged = judge(site, &context.profile, perturbed, &understood.setting, context.day());
     let Some(mut mix) = judged else {
         let problem = Problem::refused("no-flow", "nothing flows in this setting", "give a flow above zero");
         return Err(Failure::Refused(vec![problem], context.system));
@@ -87,12 +86,21 @@ fn answer(
         let Blend { flow_m3s, temperature_c, .. } = was.release;
         let before = Before { flow_m3s: Some(flow_m3s), temperature_c: Some(temperature_c) };
         let mut checks = Vec::new();
-        let change = change(site, (now, before), &understood.setting, &[mix.release], date, &mut checks);
+        let change = change(
+            site,
+            (now, before),
+            &understood.setting,
+            &[mix.release],
+            context.on.date_naive(),
+            &mut checks,
+        );
         mix.add_limits(site, &context.profile.column, &understood.setting, checks);
         change
     });
     if let Some(day) = &day {
-        mix.targets.clone_from(&day.targets);
+        mix.targets.clone_from(&day.held.targets);
+        mix.points.clone_from(&day.held.points);
+        mix.conflicts.clone_from(&day.held.conflicts);
         mix.warnings.extend(other_blocks(day, &mix.warnings));
     }
     Ok(MixAnswer { setting: understood.setting, mix, now, change, day })
@@ -117,13 +125,10 @@ fn judged_now(
 ) -> (Option<(Setting, Mix)>, Option<Problem>) {
     let why = match now_setting(context) {
         Ok(now) if same(&now.setting, tried) => return (None, None),
-        Ok(now) => {
-            let date = context.on.date_naive();
-            match judge(context.site(), &context.profile, perturbed, &now.setting, date) {
-                Some(mix) => return (Some((now.setting, mix)), None),
-                None => "nothing flows in it".to_owned(),
-            }
-        }
+        Ok(now) => match judge(context.site(), &context.profile, perturbed, &now.setting, context.day()) {
+            Some(mix) => return (Some((now.setting, mix)), None),
+            None => "nothing flows in it".to_owned(),
+        },
         Err(Failure::Usage(why)) => why,
         Err(Failure::Stopped) => String::new(),
         Err(Failure::Refused(problems, _)) => problems.first().map_or_else(String::new, |p| p.words.clone()),

@@ -12,6 +12,7 @@ use crate::files::cast::{TIME_CURE, parse_time};
 use crate::files::folder::{self, Folder, demonstrations};
 use crate::files::template;
 use crate::files::text::Source;
+use crate::mix::Day;
 use crate::problem::Problem;
 use crate::profile::Profile;
 use crate::river::Conditions;
@@ -25,6 +26,7 @@ mod day;
 mod mix;
 mod pool;
 pub mod rank;
+pub mod river;
 mod setting;
 mod since;
 mod solve;
@@ -50,6 +52,17 @@ pub enum Failure {
     Stopped,
     /// It can, but the files, or the files with these numbers, give no answer; with the units to say it in.
     Refused(Vec<Problem>, System),
+}
+
+impl Failure {
+    /// Why, in one sentence; quantities as [`say`](crate::units::say) marks them.
+    pub fn words(&self) -> String {
+        match self {
+            Self::Usage(words) => words.clone(),
+            Self::Stopped => "stopped".to_owned(),
+            Self::Refused(problems, _) => problems.first().map_or_else(String::new, |p| p.words.clone()),
+        }
+    }
 }
 
 /// The answer of `check`: everything said of a site folder, and the units to say it in.
@@ -133,6 +146,11 @@ impl Context {
     /// The checked site.
     pub fn site(&self) -> &Site {
         &self.folder.site
+    }
+
+    /// The decision date with what is known around the river.
+    pub fn day(&self) -> Day {
+        Day::new(self.site(), self.on.date_naive(), self.conditions.clone())
     }
 
     /// A site with a cast of it and a decision date.

@@ -1,7 +1,7 @@
 //! The split that gives a wanted temperature: of a setting, its two largest parts varied, everything else kept.
 
 use crate::mix::{draw_levels, groups, levels, release};
-use crate::target::Target;
+use crate::target::{DAM, Target};
 use crate::withdrawal::CrestForm;
 
 use super::rank::{Part, Root};
@@ -31,8 +31,9 @@ pub struct Solved {
 
 /// The temperature a site prefers on the date: of the first rule valid for the dam that names one, C.
 pub fn preferred_c(context: &Context) -> Option<f64> {
-    let valid = |t: &&Target| t.span.contains(context.on.date_naive()) && t.point == "dam";
-    context.site().targets.iter().filter(valid).find_map(|t| t.preferred_c)
+    let at_dam = |t: &Target| t.point == DAM && t.is_of_temperature();
+    let valid = context.site().targets_on(context.on.date_naive());
+    valid.filter(|(_, t)| at_dam(t)).find_map(|(_, t)| t.preferred_c)
 }
 
 /// The splits of a setting's two largest parts, outlets set by flow or totals of wells, that give a temperature.

@@ -91,6 +91,10 @@ pub enum Action {
     Again,
     /// Begin a new site.
     NewSite,
+    /// What arrives day by day.
+    DayByDay,
+    /// What stations recorded.
+    Record,
 }
 
 /// Where a key works.
@@ -106,6 +110,8 @@ pub enum Place {
     Mix,
     /// The rank screen.
     Rank,
+    /// The river screen.
+    River,
     /// The list of sites.
     Sites,
     /// The list of problems of a broken site.
@@ -120,12 +126,13 @@ pub enum Place {
 
 impl Place {
     /// Every place with its heading in the help.
-    pub const HEADINGS: [(Self, &'static str); 10] = [
+    pub const HEADINGS: [(Self, &'static str); 11] = [
         (Self::Everywhere, "everywhere"),
         (Self::Site, "every screen"),
         (Self::Pool, "pool"),
         (Self::Mix, "mix"),
         (Self::Rank, "rank"),
+        (Self::River, "river"),
         (Self::Sites, "list of sites"),
         (Self::Problems, "problems of the files"),
         (Self::Help, "this help"),
@@ -180,9 +187,10 @@ pub const TABLE: &[Binding] = &[
     ctrl('z', "Ctrl-Z", "to the shell; fg comes back", A::Suspend),
     on(P::Everywhere, KeyCode::Esc, "Esc", "", "back; stops computing", A::Back),
     on(P::Everywhere, Char(','), ",", "", "settings: units, symbols, colours, mouse", A::Settings),
-    on(P::Site, Char('1'), "1-3", "", "pool, mix, rank", A::Screen(1)),
+    on(P::Site, Char('1'), "1-4", "", "pool, mix, rank, river", A::Screen(1)),
     on(P::Site, Char('2'), "", "", "", A::Screen(2)),
     on(P::Site, Char('3'), "", "", "", A::Screen(3)),
+    on(P::Site, Char('4'), "", "", "", A::Screen(4)),
     on(P::Site, KeyCode::Tab, "Tab", "", "the next screen", A::NextScreen),
     on(P::Site, KeyCode::BackTab, "", "", "", A::PreviousScreen),
     on(P::Site, Char('y'), "y", "", "copy this answer to the clipboard of the terminal", A::Copy),
@@ -257,6 +265,23 @@ pub const TABLE: &[Binding] = &[
     on(P::Rank, KeyCode::PageDown, "", "", "", A::PageDown),
     on(P::Rank, KeyCode::Home, "Home End", "", "the first, the last", A::First),
     on(P::Rank, KeyCode::End, "", "", "", A::Last),
+    on(P::River, KeyCode::Up, "Arrows", "", "choose a rule and what to change of it; scroll", A::Up),
+    on(P::River, KeyCode::Down, "", "", "", A::Down),
+    on(P::River, KeyCode::Left, "", "", "", A::Left),
+    on(P::River, KeyCode::Right, "", "", "", A::Right),
+    on(P::River, KeyCode::Enter, "Enter", "type", "type a value, with a unit or without", A::Enter),
+    on(P::River, Char('+'), "+ -", "turn", "a step more, a step less", A::More),
+    on(P::River, Char('='), "", "", "", A::More),
+    on(P::River, Char('-'), "", "", "", A::Less),
+    on(P::River, Char('>'), "> <", "", "a large step more, less", A::MuchMore),
+    on(P::River, Char('<'), "", "", "", A::MuchLess),
+    on(P::River, Char('.'), "", "", "", A::MuchMore),
+    on(P::River, Char('d'), "d", "days", "what arrives day by day; and back", A::DayByDay),
+    on(P::River, Char('v'), "v", "record", "what stations recorded, against the rules; and back", A::Record),
+    on(P::River, Char('u'), "u", "undo", "take the last change back", A::Undo),
+    on(P::River, Char('r'), "r", "", "make it again", A::Redo),
+    on(P::River, KeyCode::PageUp, "PgUp PgDn", "", "scroll", A::PageUp),
+    on(P::River, KeyCode::PageDown, "", "", "", A::PageDown),
     on(P::Sites, KeyCode::Up, "Up Down", "choose", "choose a site", A::Up),
     on(P::Sites, KeyCode::Down, "", "", "", A::Down),
     on(P::Sites, KeyCode::Enter, "Enter", "open", "open it", A::Enter),

@@ -77,6 +77,7 @@ fn on_terminal(asked: Asked) -> io::Result<()> {
         quick: worker(&send),
         long: worker(&send),
         aside: worker(&send),
+        down: worker(&send),
         errands: {
             let send = send.clone();
             Errands::start(move |event| _ = send.send(Arrived::Event(event)))
@@ -136,7 +137,7 @@ fn wait(arrivals: &Receiver<Arrived>, model: &mut Model, end: &AtomicBool) -> Op
         if end.load(Ordering::Relaxed) || !terminal::is_there() {
             return None;
         }
-        let busy = model.quick.is_some() || model.long.is_some() || model.aside.is_some();
+        let busy = model.under_way();
         let first = arrivals.recv_timeout(if busy { BUSY } else { IDLE });
         let mut effects = update(model, Event::Tick(Utc::now()));
         match first {
@@ -162,6 +163,7 @@ struct Outside {
     quick: Worker,
     long: Worker,
     aside: Worker,
+    down: Worker,
     errands: Errands,
     kept: Kept,
     watched: Arc<Mutex<Option<Seen>>>,
@@ -199,6 +201,7 @@ impl Outside {
             Lane::Quick => &self.quick,
             Lane::Long => &self.long,
             Lane::Aside => &self.aside,
+            Lane::Down => &self.down,
         }
     }
 

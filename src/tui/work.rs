@@ -12,14 +12,15 @@ use chrono::{DateTime, Utc};
 
 use crate::files::folder::{Stamps, stamps};
 use crate::problem::Problem;
-use crate::tasks::rank::{RankAnswer, RankAsked, rank};
+use crate::tasks::rank::{RankAnswer, RankAsked, Shown, rank};
+use crate::tasks::river::downstream;
 use crate::tasks::{
-    Asked, Cast, Changed, Context, Failure, Given, MixAnswer, PoolAnswer, Solved, casts, mix_given, open,
-    pool, preferred_c, solve,
+    Asked, Cast, Changed, Context, Failure, Given, MixAnswer, PoolAnswer, Solved, casts, mix, mix_given,
+    open, pool, preferred_c, solve,
 };
 use crate::units::System;
 
-use super::model::asked;
+use super::model::{Downstream, asked};
 
 /// Who computes: what answers a key, or what takes longer.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -30,6 +31,8 @@ pub enum Lane {
     Long,
     /// The casts of the season.
     Aside,
+    /// The river.
+    Down,
 }
 
 /// What settings are computed on.
@@ -66,6 +69,15 @@ pub enum Work {
     },
     /// Every cast of the season, under what is changed except the pool and the cast.
     Casts(Arc<Context>, Changed),
+    /// What arrives downstream of what is tried, beside what is set now and the best of the ranking.
+    River {
+        /// The files and what is changed.
+        context: Arc<Context>,
+        /// The setting tried, with its answer.
+        tried: Box<(Given, MixAnswer)>,
+        /// The best of the ranking, with what it sets.
+        best: Option<Box<(Given, Shown)>>,
+    },
 }
 
 /// What settings are computed on.
@@ -106,6 +118,8 @@ pub enum Done {
     Ranked(Result<Box<(Arc<Context>, RankAnswer)>, Failure>),
     /// The casts of the season.
     Casts(Result<Vec<Cast>, Failure>),
+    /// What arrives downstream.
+    Down(Result<Box<Downstream>, Failure>),
 }
 
 impl Work {
@@ -115,6 +129,7 @@ impl Work {
             Self::Open(..) | Self::Mix { .. } => Lane::Quick,
             Self::Rank { .. } => Lane::Long,
             Self::Casts(..) => Lane::Aside,
+            Self::River { .. } => Lane::Down,
         }
     }
 
@@ -138,6 +153,14 @@ impl Work {
                 let changed = Changed { cast: None, pool_m: None, ..changed };
                 Done::Casts(base.changed(&changed).map(|context| casts(&context)))
             }
+            Self::River { context, tried, best } => {
+                let (given, answer) = *tried;
+                let (best, shown) = best.map(|b| *b).unzip();
+                // a site that says nothing of what is set now has nothing to show of it
+                let now = mix(&context, &[]).ok();
+                let answer = downstream(&context, Some(&answer), now.as_ref(), shown.as_ref());
+                Done::Down(Ok(Box::new(Downstream { context, tried: Some(given), best, answer })))
+            }
         }
     }
 
@@ -148,6 +171,7 @@ impl Work {
         match lane {
             Lane::Long => Done::Ranked(Err(failure)),
             Lane::Aside => Done::Casts(Err(failure)),
+            Lane::Down => Done::Down(Err(failure)),
             Lane::Quick if opening => Done::Opened(Err(failure), None),
             Lane::Quick => Done::Mixed(Err(failure)),
         }

@@ -92,7 +92,7 @@ fn ranked(gates: usize, steps: usize) -> Option<(Ranking, f64)> {
     let question = Question {
         site: &site,
         profile: &profile,
-        date: NaiveDate::from_ymd_opt(2025, 7, 14)?,
+        day: &NaiveDate::from_ymd_opt(2025, 7, 14)?.into(),
         blocks: &[(1.0, FLOW_M3S)],
         now: Some(&now),
         before: Before::default(),

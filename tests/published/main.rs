@@ -3,6 +3,7 @@
 
 #![allow(clippy::unwrap_used, reason = "a test stops at its first surprise")]
 
+mod gas;
 mod layering;
 mod mix;
 mod observed;
@@ -15,6 +16,7 @@ mod table;
 mod targets;
 mod units;
 mod water;
+mod weather;
 mod wells;
 mod withdrawal;
 

@@ -83,7 +83,7 @@ fn ranked_at(site: &Site, from: Option<(f64, f64)>, flow_m3s: f64) -> Ranking {
     let question = Question {
         site,
         profile: &profile,
-        date: NaiveDate::from_ymd_opt(2025, 7, 14).unwrap(),
+        day: &NaiveDate::from_ymd_opt(2025, 7, 14).unwrap().into(),
         blocks: &[(1.0, flow_m3s)],
         now: before.as_ref(),
         before: Before { flow_m3s: from.map(|f| f.0), temperature_c: from.map(|f| f.1) },

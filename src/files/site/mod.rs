@@ -3,11 +3,12 @@
 mod limits;
 mod outlets;
 mod river;
+mod targets;
 
 use chrono::{Offset, Utc};
 
 use crate::problem::{Problem, any_refused};
-use crate::site::{ListedCast, Raw, RawPool, RawRow, RawTarget, Site, WidthSource};
+use crate::site::{ListedCast, Raw, RawPool, RawRow, Site, WidthSource};
 use crate::units::{Dimension, Folder, System};
 
 use crate::files::cast::{Column, TIME_CURE, parse_time};
@@ -161,7 +162,9 @@ fn raw_site(map: Map) -> Raw {
     raw.blocks = limits::blocks(&read, &map);
     within(&map, "bins", |m| limits::bins(&read, m, &mut raw.bins));
     within(&map, "limits", |m| raw.limits = limits::limits(&read, m));
-    raw.targets = each(&map, "targets", |m| target(&read, m));
+    raw.targets = each(&map, "targets", |m| targets::target(&read, m));
+    raw.year_type = text(&map, "year_type");
+    within(&map, "events", |m| raw.events = targets::events(m));
     raw.cold_water_c = map
         .optional("cold_water")
         .and_then(|v| v.list())
@@ -293,22 +296,6 @@ fn pair(read: &In, value: &Value, dimensions: [Dimension; 2]) -> Option<(f64, f6
         return None;
     };
     Some((read.quantity(first, dimensions[0])?, read.quantity(second, dimensions[1])?))
-}
-
-fn target(read: &In, map: &Map) -> RawTarget {
-    RawTarget {
-        name: map.required("name").and_then(|v| v.text().map(str::to_owned)),
-        from: text(map, "from"),
-        to: text(map, "to"),
-        statistic: text(map, "statistic"),
-        low_c: read.optional(map, "low", Dimension::Temperature),
-        preferred_c: read.optional(map, "preferred", Dimension::Temperature),
-        high_c: read.optional(map, "high", Dimension::Temperature),
-        buffer_c: read.optional(map, "buffer", Dimension::TemperatureDifference),
-        oxygen_min_mg_l: read.optional(map, "oxygen_min", Dimension::Concentration),
-        point: text(map, "point"),
-        source: text(map, "source"),
-    }
 }
 
 fn checks(read: &In, map: &Map, raw: &mut Raw) {

@@ -2,7 +2,10 @@
 
 mod rank;
 mod rank_shape;
+mod river;
+mod river_record;
 mod shape;
+mod targets;
 
 use std::collections::BTreeMap;
 use std::fmt::Write as _;
@@ -10,7 +13,7 @@ use std::fmt::Write as _;
 use serde::Serialize;
 
 use crate::mix::limits::Check;
-use crate::mix::{Drawn, Gate, Mix, Setting, TargetStanding, WellState};
+use crate::mix::{Drawn, Gate, Mix, Setting, WellState};
 use crate::problem::{Problem, Weight, is_harmful};
 use crate::site::Site;
 use crate::tasks::{Change, ColdChange, Context, MixAnswer, Move, PoolAnswer, Since};
@@ -20,12 +23,15 @@ use crate::withdrawal::{End, Opening};
 use shape::{
     BlockJson, CheckJson, ColdChangeJson, ColdJson, DayJson, FlagJson, Head, LayeringJson, LevelJson,
     MixJson, MovedJson, NowJson, OutletJson, PoolJson, ProblemJson, ProfileJson, ReleaseJson, SettingJson,
-    SinceJson, TargetJson, WarningJson, WellJson, ZoneJson,
+    SinceJson, WarningJson, WellJson, ZoneJson,
 };
 
 use super::sentence::{METHOD, caution};
 
+use targets::{conflicts, points, targets};
+
 pub use rank::rank;
+pub use river::river;
 
 /// The answer of `mix`.
 pub fn mix(context: &Context, answer: &MixAnswer) -> String {
@@ -37,7 +43,9 @@ pub fn mix(context: &Context, answer: &MixAnswer) -> String {
         wells: answer.setting.wells.iter().map(|w| well(site, &answer.setting, w)).collect(),
         levels: answer.mix.levels.iter().map(|d| level(site, d)).collect(),
         release: release(&answer.mix),
-        targets: targets(site, &answer.mix.targets, if answer.day.is_some() { "blocks" } else { "steady" }),
+        targets: targets(site, &answer.mix.targets),
+        conflicts: conflicts(site, &answer.mix.conflicts),
+        points: points(site, &answer.mix.points),
         day: answer.day.as_ref().map(|day| DayJson {
             blocks: day
                 .blocks
@@ -58,7 +66,7 @@ pub fn mix(context: &Context, answer: &MixAnswer) -> String {
         now: answer.now.as_ref().map(|(now, mix)| NowJson {
             setting: setting(site, now),
             release: release(mix),
-            targets: targets(site, &mix.targets, "steady"),
+            targets: targets(site, &mix.targets),
         }),
         moves: moves.map(|m| m.count),
         moved: answer.change.as_ref().map(|c| moved(site, c)),
@@ -294,36 +302,6 @@ fn release(mix: &Mix) -> ReleaseJson {
         oxygen_mg_l: mix.release.oxygen_mg_l,
         band_c: ends(mix.spread.band_c()),
         band_oxygen_mg_l: ends(mix.spread.band_oxygen_mg_l()),
-    }
-}
-
-fn targets(site: &Site, standings: &[TargetStanding], basis: &'static str) -> Vec<TargetJson> {
-    standings.iter().map(|s| target(site, s, basis)).collect()
-}
-
-fn target(site: &Site, s: &TargetStanding, basis: &'static str) -> TargetJson {
-    let rule = &site.targets[s.target];
-    TargetJson {
-        name: rule.name.clone(),
-        point: rule.point.clone(),
-        statistic: rule.statistic.name(),
-        basis,
-        value_c: s.value_c,
-        low_c: rule.low_c,
-        preferred_c: rule.preferred_c,
-        high_c: rule.high_c,
-        buffer_c: rule.buffer_c,
-        standing: s.temperature.0.word(),
-        by_c: s.temperature.1,
-        oxygen_mg_l: s.oxygen_mg_l,
-        oxygen_min_mg_l: rule.oxygen_min_mg_l,
-        oxygen_standing: s.oxygen.0.word(),
-        oxygen_by_mg_l: s.oxygen.1,
-        share_inside: s.share_inside,
-        oxygen_share_inside: s.oxygen_share_inside,
-        share_inside_both: s.share_inside_both,
-        governs: s.governs,
-        source: rule.source.clone(),
     }
 }
 

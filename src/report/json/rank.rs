@@ -14,7 +14,8 @@ use super::rank_shape::{
     WholeDayJson,
 };
 use super::shape::SettingJson;
-use super::{by_gate, checks, ends, head, moved, setting, targets, warnings, well, written};
+use super::targets::{conflicts, points, targets};
+use super::{by_gate, checks, ends, head, moved, setting, warnings, well, written};
 use crate::report::sentence::{caution, unsure_words};
 
 /// The answer of `rank`.
@@ -95,7 +96,9 @@ fn ranked(site: &Site, shown: &Shown) -> RankedJson {
             time_mean_c: shown.temperature_c,
             by_flow_c: shown.by_flow_c,
         },
-        targets: targets(site, &shown.targets, if shown.parts.len() > 1 { "blocks" } else { "steady" }),
+        targets: targets(site, &shown.targets),
+        conflicts: conflicts(site, &shown.conflicts),
+        points: points(site, &shown.points),
         cold_water_m3_per_day: shown.cold_m3_per_day,
         moves: moves.map(|m| m.count),
         moved: shown.change.as_ref().map(|c| moved(site, c)),
@@ -216,8 +219,8 @@ fn nothing_fits(context: &Context, answer: &RankAnswer) -> Option<NothingFitsJso
             setting: setting(context.site(), &shown.day),
             temperature_c: shown.temperature_c,
             oxygen_mg_l: shown.oxygen_mg_l,
-            by_c: most(shown.targets.iter().map(|s| s.temperature.1)),
-            by_mg_l: most(shown.targets.iter().map(|s| s.oxygen.1)),
+            by_c: most(shown.targets.iter().filter(|s| !s.wish).map(|s| s.by_c(context.site()))),
+            by_mg_l: most(shown.targets.iter().filter(|s| !s.wish).map(|s| s.oxygen.1)),
         }),
     })
 }

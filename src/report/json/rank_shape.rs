@@ -4,7 +4,8 @@ use std::collections::BTreeMap;
 
 use serde::Serialize;
 
-use super::shape::{CheckJson, Head, MovedJson, ReleaseJson, SettingJson, TargetJson, WarningJson, WellJson};
+use super::shape::{CheckJson, Head, MovedJson, ReleaseJson, SettingJson, WarningJson, WellJson};
+use super::targets::{ConflictJson, PointJson, TargetJson};
 
 #[derive(Serialize)]
 pub(super) struct RankJson {
@@ -67,6 +68,8 @@ pub(super) struct RankedJson {
     pub(super) blocks: Option<Vec<BlockJson>>,
     pub(super) release: WholeDayJson,
     pub(super) targets: Vec<TargetJson>,
+    pub(super) conflicts: Vec<ConflictJson>,
+    pub(super) points: Vec<PointJson>,
     pub(super) cold_water_m3_per_day: Option<f64>,
     pub(super) moves: Option<usize>,
     pub(super) moved: Option<Vec<MovedJson>>,

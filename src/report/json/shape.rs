@@ -4,6 +4,8 @@ use std::collections::BTreeMap;
 
 use serde::Serialize;
 
+use super::targets::{ConflictJson, PointJson, TargetJson};
+
 #[derive(Serialize)]
 pub(super) struct Head {
     pub(super) site: String,
@@ -45,6 +47,8 @@ pub(super) struct MixJson {
     pub(super) levels: Vec<LevelJson>,
     pub(super) release: ReleaseJson,
     pub(super) targets: Vec<TargetJson>,
+    pub(super) conflicts: Vec<ConflictJson>,
+    pub(super) points: Vec<PointJson>,
     pub(super) day: Option<DayJson>,
     pub(super) now: Option<NowJson>,
     pub(super) moves: Option<usize>,
@@ -134,30 +138,6 @@ pub(super) struct ReleaseJson {
     pub(super) oxygen_mg_l: Option<f64>,
     pub(super) band_c: Option<[f64; 2]>,
     pub(super) band_oxygen_mg_l: Option<[f64; 2]>,
-}
-
-#[derive(Serialize)]
-pub(super) struct TargetJson {
-    pub(super) name: String,
-    pub(super) point: String,
-    pub(super) statistic: &'static str,
-    pub(super) basis: &'static str,
-    pub(super) value_c: Option<f64>,
-    pub(super) low_c: Option<f64>,
-    pub(super) preferred_c: Option<f64>,
-    pub(super) high_c: Option<f64>,
-    pub(super) buffer_c: f64,
-    pub(super) standing: &'static str,
-    pub(super) by_c: Option<f64>,
-    pub(super) oxygen_mg_l: Option<f64>,
-    pub(super) oxygen_min_mg_l: Option<f64>,
-    pub(super) oxygen_standing: &'static str,
-    pub(super) oxygen_by_mg_l: Option<f64>,
-    pub(super) share_inside: Option<f64>,
-    pub(super) oxygen_share_inside: Option<f64>,
-    pub(super) share_inside_both: Option<f64>,
-    pub(super) governs: bool,
-    pub(super) source: Option<String>,
 }
 
 #[derive(Serialize)]

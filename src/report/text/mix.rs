@@ -2,18 +2,17 @@
 
 use std::fmt::Write as _;
 
-use crate::mix::{Drawn, Gate, Mix, Setting, Spread, TargetStanding};
+use crate::mix::{Drawn, Gate, Mix, Setting, Spread};
 use crate::problem::harmless;
 use crate::site::{Outlet, Site};
-use crate::target::{Standing, Target};
+use crate::target::Standing;
 use crate::tasks::{Context, DayAnswer, MixAnswer};
 use crate::units::{Dimension, System, figure};
 use crate::withdrawal::{End, Side};
 
 use super::gates::moves;
-use super::{
-    drawn_column, fitted, flags_of, flow, labelled, length, list, oxygen, step, temperature, wrapped,
-};
+use super::targets::standings;
+use super::{drawn_column, fitted, flags_of, flow, labelled, length, list, oxygen, temperature, wrapped};
 
 pub(super) fn body(context: &Context, answer: &MixAnswer) -> String {
     let (site, system) = (context.site(), context.system);
@@ -37,8 +36,7 @@ pub(super) fn body(context: &Context, answer: &MixAnswer) -> String {
     }
     out.push_str(&labelled("", "leaving the pool; brackets hold 10-90 % of our perturbed cases"));
     out.push('\n');
-    let basis = if answer.day.is_some() { "blocks of the day" } else { "steady release" };
-    out.push_str(&standings(site, &answer.mix, basis, system));
+    out.push_str(&standings(site, &answer.mix.targets, system));
     out.push_str(&levels(site, &answer.mix.levels, system));
     out.push_str(&wells(site, &answer.setting, system));
     out.push('\n');
@@ -200,78 +198,10 @@ pub fn wells_changed(site: &Site, now: &Setting, to: &Setting, system: System) -
     words.collect::<Vec<_>>().join(", ")
 }
 
-/// A target in words: `48.0 to 56.0 F, preferred 52.0 F, oxygen at least 7.0 mg/L`.
-pub fn range(rule: &Target, system: System) -> String {
-    let unit = system.unit(Dimension::Temperature);
-    let mut parts = Vec::new();
-    match (rule.low_c, rule.high_c) {
-        (Some(low), Some(high)) => {
-            parts.push(format!("{} to {}", figure(low, unit, 1), temperature(high, system)));
-        }
-        (Some(low), None) => parts.push(format!("from {}", temperature(low, system))),
-        (None, Some(high)) => parts.push(format!("to {}", temperature(high, system))),
-        (None, None) => {}
-    }
-    if rule.buffer_c > 0.0 {
-        parts.push(format!("buffer {}", step(rule.buffer_c, system)));
-    }
-    if let Some(preferred) = rule.preferred_c {
-        parts.push(format!("preferred {}", temperature(preferred, system)));
-    }
-    if let Some(least) = rule.oxygen_min_mg_l {
-        parts.push(format!("oxygen at least {least:.1} mg/L"));
-    }
-    parts.join(", ")
-}
-
 /// `ABOVE by 0.4 F`; a miss smaller than the last digit shown must not read as none.
 pub fn missed(standing: Standing, by: f64, unit: &str) -> String {
     let amount = if by < 0.05 { format!("less than 0.1 {unit}") } else { format!("{by:.1} {unit}") };
     format!("{} by {amount}", standing.word().to_uppercase())
-}
-
-/// How the release stands against a target: `temperature ABOVE by 0.4 F, oxygen inside`.
-pub fn standing_words(s: &TargetStanding, rule: &Target, system: System) -> String {
-    let unit = system.unit(Dimension::TemperatureDifference);
-    let warm = match s.temperature {
-        (Standing::Unknown, _) => None,
-        (standing, Some(by)) if by > 0.0 => {
-            Some(format!("temperature {}", missed(standing, unit.from_si(by), unit.symbol())))
-        }
-        (standing, _) => Some(format!("temperature {}", standing.word())),
-    };
-    let aired = match s.oxygen {
-        (Standing::Unknown, _) if rule.oxygen_min_mg_l.is_some() => Some("oxygen UNKNOWN".to_owned()),
-        (Standing::Unknown, _) => None,
-        (standing, Some(by)) if by > 0.0 => Some(format!("oxygen {}", missed(standing, by, "mg/L"))),
-        (standing, _) => Some(format!("oxygen {}", standing.word())),
-    };
-    [warm, aired].into_iter().flatten().collect::<Vec<_>>().join(", ")
-}
-
-fn standings(site: &Site, mix: &Mix, basis: &str, system: System) -> String {
-    if mix.targets.is_empty() {
-        return labelled("Target", "none is valid on this date") + "\n";
-    }
-    let mut out = String::new();
-    for s in &mix.targets {
-        let rule = &site.targets[s.target];
-        let governs = if s.governs && mix.targets.len() > 1 { ": governs" } else { "" };
-        let statistic = rule.statistic.name().replace('_', " ");
-        let (name, point) = (harmless(&rule.name), harmless(&rule.point));
-        out.push_str(&labelled("Target", &format!("{name} at the {point} ({statistic}, {basis}){governs}")));
-        let source = rule.source.as_deref().map_or_else(|| "no source given".to_owned(), harmless);
-        out.push_str(&labelled("", &format!("{} [{source}]", range(rule, system))));
-        let percent = |share: Option<f64>| share.map(|s| format!("{:.0} %", 100.0 * s));
-        let cases = match (percent(s.share_inside_both), percent(s.share_inside)) {
-            (Some(both), _) => format!("{both} of perturbed cases inside"),
-            (None, Some(warm)) => format!("{warm} of perturbed cases inside in temperature"),
-            (None, None) => "no share known".to_owned(),
-        };
-        out.push_str(&labelled("", &format!("{}; {cases}", standing_words(s, rule, system))));
-    }
-    out.push('\n');
-    out
 }
 
 fn levels(site: &Site, drawn: &[Drawn], system: System) -> String {

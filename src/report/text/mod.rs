@@ -4,6 +4,8 @@ mod gates;
 mod mix;
 mod pool;
 pub mod rank;
+pub mod river;
+mod targets;
 
 use std::fmt::Write as _;
 
@@ -11,15 +13,14 @@ use unicode_width::UnicodeWidthStr;
 
 use crate::problem::{Problem, Weight, harmless};
 use crate::tasks::rank::RankAnswer;
+use crate::tasks::river::RiverAnswer;
 use crate::tasks::{Context, Freshness, MixAnswer, PoolAnswer};
 use crate::units::{Dimension, System, show};
 
 pub use gates::{instruction, moves, openings};
-pub use mix::{
-    apart, difference, missed, range, release_line, release_words, setting_words, standing_words,
-    wells_changed,
-};
+pub use mix::{apart, difference, missed, release_line, release_words, setting_words, wells_changed};
 pub use pool::{cold_since_words, layer_words, reach_words, since_words};
+pub use targets::{EXAMPLE, named, range, standing_words};
 
 use super::column::drawn_column;
 use super::fitted;
@@ -58,6 +59,14 @@ pub fn mix(context: &Context, answer: &MixAnswer) -> String {
 pub fn rank(context: &Context, answer: &RankAnswer) -> String {
     let mut out = head(context, &context.fingerprint);
     out.push_str(&rank::body(context, answer));
+    out.push_str(&wrapped(caution(), 0));
+    out
+}
+
+/// The answer of `river`.
+pub fn river(context: &Context, answer: &RiverAnswer) -> String {
+    let mut out = head(context, &context.fingerprint);
+    out.push_str(&river::body(context, answer));
     out.push_str(&wrapped(caution(), 0));
     out
 }

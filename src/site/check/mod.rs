@@ -7,6 +7,8 @@ mod outlets;
 mod reaches;
 mod river;
 mod rules;
+mod spread;
+mod statistic;
 
 use std::collections::HashMap;
 
@@ -60,9 +62,11 @@ impl Site {
         limits::blocks(&raw.blocks, &mut problems);
         let limits = limits::limits(raw, pool.as_ref(), &mut problems);
         let targets: Vec<Option<Target>> =
-            raw.targets.iter().enumerate().map(|(i, t)| rules::target(t, i, &mut problems)).collect();
+            (0..raw.targets.len()).map(|i| rules::target(raw, i, &mut problems)).collect();
+        let events = rules::events(raw, &mut problems);
+        rules::references(&targets, river.as_ref(), &mut problems);
         let (now, now_wells) = operation::now(raw, &outlets, &mut problems);
-        rules::spread(raw, &mut problems);
+        spread::spread(raw, &mut problems);
         coverage(raw, &mut problems);
         if any_refused(&problems) {
             return (None, problems);
@@ -72,8 +76,8 @@ impl Site {
                 name: raw.name.clone()?,
                 river_name: raw.river_name.clone(),
                 river,
-                year_type: None,
-                events: Vec::new(),
+                year_type: raw.year_type.clone(),
+                events,
                 coverage: raw.coverage,
                 units: raw.units,
                 datum: datum?,

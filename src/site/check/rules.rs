@@ -1,129 +1,183 @@
-//! Checks of targets, and the figures of `band`, `bins` and `checks`.
+//! Checks of targets.
+
+use chrono::NaiveDate;
 
 use crate::problem::Problem;
-use crate::site::{Raw, RawTarget};
-use crate::target::{Span, Statistic, Target, YearDay};
+use crate::site::{Raw, RawTarget, River};
+use crate::target::{DAM, OxygenStatistic, Reference, Span, Target, YearDay};
 
-use super::outlets::{not_negative, positive};
+use super::statistic::statistic;
 
-pub(super) fn target(t: &RawTarget, i: usize, problems: &mut Vec<Problem>) -> Option<Target> {
-    let path = format!("targets[{i}]");
-    let mut day = |text: &Option<String>, key: &str, fallback: YearDay| match text.as_deref() {
-        None => Some(fallback),
-        Some(text) => {
-            let day = YearDay::parse(text);
-            if day.is_none() {
-                problems.push(
-                    Problem::refused(
-                        "date",
-                        format!("`{text}` is not a day of the year"),
-                        "write month-day, such as 05-01",
-                    )
-                    .at(format!("{path}.{key}")),
-                );
-            }
-            day
+/// The source that marks values as nobody's licence.
+const EXAMPLE_ONLY: &str = "example only";
+/// The word for the temperature of a river in balance with the air.
+const NATURAL: &str = "natural";
+
+/// A target as it is checked, and problems at its keys.
+pub(super) struct Checking<'a> {
+    pub(super) rule: &'a RawTarget,
+    pub(super) path: String,
+    pub(super) problems: &'a mut Vec<Problem>,
+}
+
+impl Checking<'_> {
+    pub(super) fn refuse(&mut self, kind: &'static str, key: &str, words: String, cure: impl Into<String>) {
+        self.problems.push(Problem::refused(kind, words, cure).at(format!("{}.{key}", self.path)));
+    }
+
+    pub(super) fn day(&mut self, text: Option<&str>, key: &str, fallback: YearDay) -> Option<YearDay> {
+        let Some(text) = text else { return Some(fallback) };
+        let day = YearDay::parse(text);
+        if day.is_none() {
+            let words = format!("`{text}` is not a day of the year");
+            self.refuse("date", key, words, "write month-day, such as 05-01");
         }
-    };
-    let from = day(&t.from, "from", Span::YEAR.from);
-    let to = day(&t.to, "to", Span::YEAR.to);
-    let statistic = match t.statistic.as_deref() {
-        None => Some(Statistic::DailyMean),
-        Some(name) => {
-            let found = Statistic::parse(name);
-            if found.is_none() {
-                let known: Vec<&str> = Statistic::NAMES.iter().map(|(n, _)| *n).collect();
-                problems.push(
-                    Problem::refused(
-                        "statistic",
-                        format!("`{name}` is not a statistic"),
-                        format!("use one of {}", known.join(", ")),
-                    )
-                    .at(format!("{path}.statistic")),
-                );
-            }
-            found
+        day
+    }
+
+    fn oxygen_statistic(&mut self) -> Option<Option<OxygenStatistic>> {
+        let t = self.rule;
+        if t.oxygen_min_mg_l.is_some() && t.oxygen_min_share.is_some() {
+            let words = "oxygen_min and oxygen_min_percent are both given".to_owned();
+            self.refuse("target-oxygen", "oxygen_min_percent", words, "make two targets of them");
         }
-    };
-    let point = t.point.clone().unwrap_or_else(|| "dam".into());
+        if t.oxygen_min_share.is_some_and(|share| share <= 0.0 || share > 2.0) {
+            let words = "the floor of oxygen lies outside 0 to 200 % of saturation".to_owned();
+            self.refuse("target-oxygen", "oxygen_min_percent", words, "write percent, such as 80");
+        }
+        let Some(name) = t.oxygen_statistic.as_deref() else { return Some(None) };
+        if t.oxygen_min_mg_l.is_none() && t.oxygen_min_share.is_none() {
+            let words = "oxygen_statistic is given without a floor of oxygen".to_owned();
+            self.refuse("target-oxygen", "oxygen_statistic", words, "give oxygen_min, or drop it");
+        }
+        let found = OxygenStatistic::parse(name);
+        if found.is_none() {
+            let known: Vec<&str> = OxygenStatistic::NAMES.iter().map(|(n, _)| *n).collect();
+            let words = format!("`{name}` is not a statistic of oxygen");
+            self.refuse("statistic", "oxygen_statistic", words, format!("use one of {}", known.join(", ")));
+        }
+        found.map(Some)
+    }
+
+    /// The day that ends it, and the event of that day; `None` where that is wrong.
+    fn until(&mut self, raw: &Raw, span: Span) -> Option<(Option<NaiveDate>, Option<String>)> {
+        let Some(text) = self.rule.until.as_deref() else { return Some((None, None)) };
+        if let Ok(date) = text.parse::<NaiveDate>() {
+            return self.within(date, span).then_some((Some(date), None));
+        }
+        let Some((name, dated)) = raw.events.iter().find(|(name, _)| name == text) else {
+            let words = format!("`{text}` is neither a date nor one of the events");
+            self.refuse("event", "until", words, "write YYYY-MM-DD, or name it under `events`");
+            return None;
+        };
+        // a date that is none is told at the event
+        let date = dated.as_deref().and_then(|date| date.parse::<NaiveDate>().ok());
+        if dated.is_none() {
+            let words = format!("`{name}` has no date yet: the rule holds to the end of its span");
+            self.problems.push(Problem::note("event-open", words).at(format!("{}.until", self.path)));
+        }
+        date.is_none_or(|date| self.within(date, span)).then(|| (date, Some(name.clone())))
+    }
+
+    fn within(&mut self, date: NaiveDate, span: Span) -> bool {
+        let within = span.contains(date);
+        if !within {
+            let words = format!("{date} lies outside the span from `from` to `to`");
+            self.refuse("event", "until", words, "correct the date or the span");
+        }
+        within
+    }
+}
+
+/// A target, checked; its point is checked with the river.
+pub(super) fn target(raw: &Raw, i: usize, problems: &mut Vec<Problem>) -> Option<Target> {
+    let t = raw.targets.get(i)?;
+    let mut of = Checking { rule: t, path: format!("targets[{i}]"), problems };
+    let from = of.day(t.from.as_deref(), "from", Span::YEAR.from);
+    let to = of.day(t.to.as_deref(), "to", Span::YEAR.to);
+    let statistic = statistic(&mut of, from);
+    let oxygen_statistic = of.oxygen_statistic();
+    if !t.years.is_empty() && raw.year_type.is_none() {
+        let words = "the rule holds in some water years, and the site does not say which this is".to_owned();
+        of.refuse("year-type", "years", words, "give year_type of the site");
+    }
+    if t.priority == Some(0) {
+        let words = "0 is no priority".to_owned();
+        of.refuse("priority", "priority", words, "1 comes first; give 1 or more");
+    }
+    let span = Span { from: from?, to: to? };
+    let (until, until_event) = of.until(raw, span)?;
+    let point = t.point.clone().unwrap_or_else(|| DAM.into());
+    let marked = t.source.as_deref().is_some_and(|s| s.trim().eq_ignore_ascii_case(EXAMPLE_ONLY));
     let built = Target {
         name: t.name.clone()?,
-        span: Span { from: from?, to: to? },
+        span,
         statistic: statistic?,
         low_c: t.low_c,
         preferred_c: t.preferred_c,
         high_c: t.high_c,
         buffer_c: t.buffer_c.unwrap_or(0.0),
         oxygen_min_mg_l: t.oxygen_min_mg_l,
+        oxygen_min_share: t.oxygen_min_share,
+        oxygen_statistic: oxygen_statistic?,
         point,
+        reference: t.reference.as_deref().map(|name| match name {
+            NATURAL => Reference::Natural,
+            name => Reference::Stream(name.to_owned()),
+        }),
+        years: t.years.clone(),
+        until,
+        until_event,
+        soft: t.soft,
+        priority: t.priority.and_then(|p| u32::try_from(p).ok()).unwrap_or(1),
+        authority: t.authority.clone(),
         source: t.source.clone(),
-        ..Target::default()
+        example: t.example.unwrap_or(marked || raw.demonstration),
     };
-    problems.extend(built.problems(&path));
+    problems.extend(built.problems(&format!("targets[{i}]")));
     Some(built)
 }
 
-/// The figures of `band`, `bins` and `checks` must be possible spreads.
-pub(super) fn spread(raw: &Raw, problems: &mut Vec<Problem>) {
-    let b = &raw.band;
-    if !(10..=10_000).contains(&b.members) {
-        problems.push(
-            Problem::refused("band", "members must be 10 to 10000", "200 is enough").at("band.members"),
-        );
+/// Events with their dates; those without one have not come yet.
+pub(super) fn events(raw: &Raw, problems: &mut Vec<Problem>) -> Vec<(String, NaiveDate)> {
+    let mut dated = Vec::new();
+    for (name, date) in &raw.events {
+        let Some(text) = date else { continue };
+        match text.parse() {
+            Ok(date) => dated.push((name.clone(), date)),
+            Err(_) => problems.push(
+                Problem::refused("date", format!("`{text}` is not a date"), "write YYYY-MM-DD")
+                    .at(format!("events.{name}")),
+            ),
+        }
     }
-    let spreads = [
-        (b.cast_c, "cast"),
-        (b.cast_mg_l, "cast_oxygen"),
-        (b.heave_m, "heave"),
-        (b.heave_m_per_day, "heave_per_day"),
-        (b.heave_max_m, "heave_max"),
-        (b.flow_share, "flow"),
-        (b.release_c, "release"),
-        (b.release_mg_l, "release_oxygen"),
-    ];
-    for (value, key) in spreads {
-        not_negative(Some(value), format!("band.{key}"), key, problems);
+    dated
+}
+
+/// References must name a side stream or a point of the river; the natural temperature needs to know the air.
+pub(super) fn references(targets: &[Option<Target>], river: Option<&River>, problems: &mut Vec<Problem>) {
+    for (i, rule) in targets.iter().enumerate() {
+        let Some(reference) = rule.as_ref().and_then(|rule| rule.reference.as_ref()) else { continue };
+        let mut refuse = |words: String, cure: &str| {
+            problems.push(Problem::refused("reference", words, cure).at(format!("targets[{i}].reference")));
+        };
+        match reference {
+            Reference::Natural if river.is_none_or(|river| river.surface.is_none()) => refuse(
+                "the natural temperature is that of a river in balance with the air, which is not given"
+                    .into(),
+                "give `equilibrium`, `monthly` or `weather` of the river",
+            ),
+            Reference::Stream(name) if !river.is_some_and(|river| names(river).any(|n| n == name)) => {
+                let words = format!("no side stream or point is named `{name}`");
+                refuse(words, "use `natural`, or a name under `river`");
+            }
+            _ => {}
+        }
     }
-    if b.zone_low <= 0.0 || b.zone_low > 1.0 || b.zone_high < 1.0 {
-        problems.push(
-            Problem::refused(
-                "band",
-                "the range of the zone factor must include 1",
-                "the default is [0.70, 1.15]",
-            )
-            .at("band.zone"),
-        );
-    }
-    let c = &raw.checks;
-    for (value, key) in [
-        (c.gap_m, "gap"),
-        (c.extrapolate_m, "extrapolate"),
-        (c.spike_c, "spike"),
-        (c.spike_mg_l, "spike_oxygen"),
-        (c.oxygen_share, "oxygen_percent"),
-        (c.stale_days, "stale_days"),
-        (c.ageing_days, "ageing_days"),
-        (c.heat_w_m2, "heat_w_m2"),
-    ] {
-        positive(Some(value), format!("checks.{key}"), key, problems);
-    }
-    let bins = [
-        (raw.bins.temperature_c, "temperature"),
-        (raw.bins.oxygen_mg_l, "oxygen"),
-        (raw.bins.cold_share, "cold_water"),
-    ];
-    for (value, key) in bins {
-        positive(Some(value), format!("bins.{key}"), key, problems);
-    }
-    positive(Some(raw.water.tds_per_us_cm), "water.tds_factor".into(), "tds_factor", problems);
-    if raw.water.solids_kg_m3 <= 1000.0 {
-        problems.push(
-            Problem::refused(
-                "solids",
-                "suspended solids must be denser than water",
-                "mineral silt is about 2650 kg/m3",
-            )
-            .at("water.solids_density"),
-        );
-    }
+}
+
+/// Names of the side streams and points of a river.
+fn names(river: &River) -> impl Iterator<Item = &str> {
+    let streams = river.reaches.iter().flat_map(|reach| &reach.inflows).map(|inflow| inflow.name.as_str());
+    streams.chain(river.points.iter().map(|point| point.name.as_str()))
 }

@@ -237,7 +237,7 @@ impl Answers<'_> {
     /// first, drawn in by halving. `None` without a target or with blocks of the day.
     pub(super) fn least(&self, progress: Progress) -> Option<Least> {
         let q = self.question;
-        let valid = q.site.targets.iter().any(|t| t.span.contains(q.date));
+        let valid = q.site.targets_on(q.day.date).next().is_some();
         let &[(_, asked_m3s)] = q.blocks else { return None };
         if !valid {
             return None;

@@ -1,11 +1,9 @@
 //! Mixes computed in full: the wells shared out, the release judged, the change from now counted.
 
-use chrono::NaiveDate;
-
 use crate::mix::limits::{self, Before, Check, Rule, Whole};
 use crate::mix::{
-    Asked, Blend, Drawn, Gate, Perturbed, Setting, Spread, draw_levels, judge, levels, release, resolve,
-    standings,
+    Asked, Blend, Day, Drawn, Gate, Held, Perturbed, Setting, Spread, draw_levels, held, judge, levels,
+    release, resolve,
 };
 use crate::rank::Ranked;
 use crate::site::Site;
@@ -23,7 +21,7 @@ pub(super) struct Kitchen<'a> {
     pub(super) context: &'a Context,
     pub(super) perturbed: &'a Perturbed,
     pub(super) groups: &'a [Vec<usize>],
-    pub(super) date: NaiveDate,
+    pub(super) day: &'a Day,
     pub(super) now: Option<&'a Setting>,
     pub(super) before: Before,
 }
@@ -103,7 +101,7 @@ impl Kitchen<'_> {
         let mut parts: Vec<ShownPart> = settings
             .into_iter()
             .map(|(share, setting)| {
-                let mix = judge(site, profile, self.perturbed, &setting, self.date)?;
+                let mix = judge(site, profile, self.perturbed, &setting, self.day)?;
                 Some(ShownPart { share, setting, mix })
             })
             .collect::<Option<_>>()?;
@@ -121,7 +119,7 @@ impl Kitchen<'_> {
         let generation_lost_mw = generation_lost_mw(site, &parts);
         let spread = over_day(&parts);
         let of_day: Vec<_> = parts.iter().map(|p| (p.share, &p.mix.release, &p.mix.spread)).collect();
-        let targets = standings(site, &of_day, self.date);
+        let Held { targets, conflicts, points, .. } = held(site, &of_day, self.day);
         let set: Vec<(f64, &Setting)> = parts.iter().map(|p| (p.share, &p.setting)).collect();
         let day = day(&set);
         let change = self.add_limits(&mut parts, &day, flow_m3s);
@@ -133,6 +131,8 @@ impl Kitchen<'_> {
             by_flow_c,
             spread,
             targets,
+            conflicts,
+            points,
             cold_m3_per_day,
             change,
             generation_lost_mw,
@@ -160,7 +160,7 @@ impl Kitchen<'_> {
         let mut more = Vec::new();
         let releases: Vec<_> = parts.iter().map(|p| p.mix.release).collect();
         let change =
-            self.now.map(|now| change(site, (now, self.before), day, &releases, self.date, &mut more));
+            self.now.map(|now| change(site, (now, self.before), day, &releases, self.day.date, &mut more));
         if parts.len() > 1 {
             // the pool falls by what the whole day takes, not by what one part of it would
             let mut whole = Vec::new();

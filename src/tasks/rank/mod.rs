@@ -115,9 +115,9 @@ pub fn rank(
     notes.extend(spill(context, &blocks));
     let perturbed = Perturbed::new(site, &context.profile, context.age_days);
     let groups = groups(site);
-    let date = context.on.date_naive();
+    let day = &context.day();
     let (now, before) = (now.as_ref(), Before::default());
-    let mut kitchen = Kitchen { context, perturbed: &perturbed, groups: &groups, date, now, before };
+    let mut kitchen = Kitchen { context, perturbed: &perturbed, groups: &groups, day, now, before };
     if let Some(release) = now.and_then(|setting| kitchen.blend(setting)) {
         kitchen.before =
             Before { flow_m3s: Some(release.flow_m3s), temperature_c: Some(release.temperature_c) };
@@ -129,7 +129,7 @@ pub fn rank(
     let question = Question {
         site,
         profile: &context.profile,
-        date,
+        day,
         blocks: &blocks,
         now,
         before: kitchen.before,

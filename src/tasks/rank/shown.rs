@@ -1,8 +1,9 @@
 //! A mix as it is shown: everything computed in full, with what it takes and why it stands where it does.
 
 use crate::mix::limits::Check;
-use crate::mix::{Mix, Setting, Spread, TargetStanding};
+use crate::mix::{Conflict, Mix, Setting, Spread, TargetStanding};
 use crate::problem::Problem;
+use crate::river::AtPoint;
 use crate::site::Site;
 use crate::tasks::change::Change;
 
@@ -47,6 +48,10 @@ pub struct Shown {
     pub spread: Spread,
     /// Standing against every target valid on the date, over the day.
     pub targets: Vec<TargetStanding>,
+    /// Hard targets that leave nothing in common.
+    pub conflicts: Vec<Conflict>,
+    /// What arrives at the points of the river that targets speak of.
+    pub points: Vec<AtPoint>,
     /// Water colder than the site's first threshold that it takes in a day, m3; `None` without a threshold.
     pub cold_m3_per_day: Option<f64>,
     /// What the change from the setting now takes; `None` where that is not known.

@@ -1,5 +1,6 @@
 //! Pictures: pure drawing of plain data into a buffer; nothing here knows the model.
 
+pub mod along;
 mod boxed;
 pub mod column;
 pub mod gauge;

@@ -74,8 +74,7 @@ pub fn rows(site: &Site, date: NaiveDate) -> Vec<Row> {
     let mut out: Vec<Row> = outlets.into_iter().map(Row::Outlet).collect();
     out.extend((0..site.wells.len()).map(Row::Well));
     out.extend([Row::Release, Row::Pool, Row::Date]);
-    let valid = |i: &usize| site.targets[*i].span.contains(date);
-    out.extend((0..site.targets.len()).filter(valid).map(Row::Target));
+    out.extend(site.targets_on(date).map(|(i, _)| Row::Target(i)));
     out
 }
 

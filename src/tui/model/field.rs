@@ -103,8 +103,8 @@ impl Field {
                     None => Err("there is no site".into()),
                 },
                 Cell::Low(i) | Cell::Preferred(i) | Cell::High(i) => {
-                    let value = bound(Dimension::Temperature)?;
                     let target = context.and_then(|c| c.site().targets.get(i)).cloned();
+                    let value = bound(target.as_ref().map_or(Dimension::Temperature, Target::dimension))?;
                     target.map_or(Ok(()), |target| fits(target, cell, &value, system)).map(|()| value)
                 }
                 Cell::Oxygen(_) => match bound(Dimension::Concentration)? {

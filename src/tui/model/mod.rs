@@ -15,7 +15,9 @@ use crate::units::System;
 pub use board::{Cell, Row, rows};
 pub use draft::{Draft, History};
 pub use field::{Field, Typed, Value};
-pub use session::{MixView, Page, PoolView, RankView, Ranked, Session, Shown, Whole};
+pub use session::{
+    Downstream, MixView, Page, PoolView, RankView, Ranked, RiverPage, RiverView, Session, Shown, Whole,
+};
 pub use tries::{Nudge, asked, opening_of, set_flow, set_opening, set_release, set_total, taken, total_m3s};
 
 use super::look::{Look, Theme};
@@ -30,12 +32,14 @@ pub enum Screen {
     Mix,
     /// Which mixes fit.
     Rank,
+    /// What arrives downstream.
+    River,
 }
 
 impl Screen {
     /// The screens there are, in the order of their numbers.
-    pub const ALL: [(&'static str, Self); 3] =
-        [("pool", Self::Pool), ("mix", Self::Mix), ("rank", Self::Rank)];
+    pub const ALL: [(&'static str, Self); 4] =
+        [("pool", Self::Pool), ("mix", Self::Mix), ("rank", Self::Rank), ("river", Self::River)];
 }
 
 /// A site of the list.
@@ -160,6 +164,8 @@ pub struct Model {
     pub long: Option<Under>,
     /// What is being read in the lane aside.
     pub aside: Option<Under>,
+    /// What is being computed of the river.
+    pub down: Option<Under>,
 }
 
 impl Model {
@@ -180,6 +186,7 @@ impl Model {
             quick: None,
             long: None,
             aside: None,
+            down: None,
         }
     }
 
@@ -199,12 +206,18 @@ impl Model {
         self.likes.units.or(self.asked.units).or(of_site).unwrap_or_default()
     }
 
+    /// Whether anything is being computed.
+    pub fn under_way(&self) -> bool {
+        [&self.quick, &self.long, &self.aside, &self.down].into_iter().any(Option::is_some)
+    }
+
     /// What is under way in a lane.
     pub fn under(&mut self, lane: Lane) -> &mut Option<Under> {
         match lane {
             Lane::Quick => &mut self.quick,
             Lane::Long => &mut self.long,
             Lane::Aside => &mut self.aside,
+            Lane::Down => &mut self.down,
         }
     }
 }

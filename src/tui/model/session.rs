@@ -3,12 +3,14 @@
 use std::sync::Arc;
 
 use crate::tasks::rank::{RankAnswer, Shown as Mix};
+use crate::tasks::river::RiverAnswer;
 use crate::tasks::{Cast, Context, Failure, Given, MixAnswer, PoolAnswer};
 
 use super::super::work::Anew;
 use super::Screen;
 use super::board::{Cell, Row, rows};
 use super::draft::{Draft, History};
+use super::tries::taken;
 
 /// Pool and settings as they were computed together.
 #[derive(Debug, Clone)]
@@ -90,6 +92,44 @@ pub struct RankView {
     pub scroll: usize,
 }
 
+/// What arrives downstream, with what it was computed for.
+#[derive(Debug, Clone)]
+pub struct Downstream {
+    /// The files and what is changed.
+    pub context: Arc<Context>,
+    /// The setting tried.
+    pub tried: Option<Given>,
+    /// What the best of the ranking sets, where there was one.
+    pub best: Option<Given>,
+    /// The answer.
+    pub answer: RiverAnswer,
+}
+
+/// What the river screen shows below its pictures.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
+pub enum RiverPage {
+    /// The rules with their standings.
+    #[default]
+    Rules,
+    /// What arrives day by day.
+    Days,
+    /// What stations recorded, against the rules.
+    Record,
+}
+
+/// Where the user is on the river screen.
+#[derive(Debug, Clone, Default)]
+pub struct RiverView {
+    /// The rule chosen, from 0, among those valid on the date.
+    pub rule: usize,
+    /// Its cell, from the left: low, preferred, high, oxygen.
+    pub column: usize,
+    /// What is shown below.
+    pub page: RiverPage,
+    /// First line shown of what scrolls there.
+    pub scroll: usize,
+}
+
 /// An open site.
 #[derive(Debug)]
 pub struct Session {
@@ -119,6 +159,12 @@ pub struct Session {
     pub mix: MixView,
     /// The rank screen.
     pub rank: RankView,
+    /// What arrives downstream: the last there is.
+    pub downstream: Option<Downstream>,
+    /// Why the newest question about it has no answer.
+    pub river_wrong: Option<Failure>,
+    /// The river screen.
+    pub river: RiverView,
 }
 
 impl Session {
@@ -144,6 +190,9 @@ impl Session {
             pool: PoolView::default(),
             mix: MixView { cell, scroll: 0 },
             rank: RankView::default(),
+            downstream: None,
+            river_wrong: None,
+            river: RiverView::default(),
         }
     }
 
@@ -196,6 +245,24 @@ impl Session {
     pub fn ranks_now(&self) -> bool {
         let of = |r: &Ranked| Arc::ptr_eq(&r.base, &self.base) && r.draft.ranks_as(self.draft());
         self.ranked.as_ref().is_some_and(of)
+    }
+
+    /// What the best of the ranking sets, where the ranking is of what is set now.
+    pub fn best_now(&self) -> Option<(&Mix, Given)> {
+        let ranked = self.ranked.as_ref().filter(|_| self.ranks_now())?;
+        let mix = ranked.answer.mixes.first()?;
+        Some((mix, taken(ranked.context.site(), mix)))
+    }
+
+    /// Whether what is told of the river is of what is set now and of the best there is.
+    pub fn flows_now(&self) -> bool {
+        let of = |d: &Downstream| {
+            self.shown.as_ref().is_some_and(|s| Arc::ptr_eq(&s.on.context, &d.context))
+                && self.is_current()
+                && d.tried.as_ref() == self.draft().tried()
+                && d.best == self.best_now().map(|b| b.1)
+        };
+        self.downstream.as_ref().is_some_and(of)
     }
 
     /// The best with every gate under the changes a ranking was made for.

@@ -8,7 +8,7 @@ use crate::units::{Dimension, show};
 
 use super::super::model::{Model, Over, Session, Shown, Stage};
 use super::super::work::{Computed, Done, Lane, Sent};
-use super::{Effect, ask_casts, ask_mixes, ask_rank, change, complain, say};
+use super::{Effect, ask_casts, ask_mixes, ask_rank, ask_river, change, complain, say};
 
 /// Takes what a worker sent; what is no longer wanted is dropped.
 pub(super) fn sent(model: &mut Model, sent: Sent) -> Vec<Effect> {
@@ -41,9 +41,21 @@ pub(super) fn sent(model: &mut Model, sent: Sent) -> Vec<Effect> {
                     }
                     Vec::new()
                 }
-                Done::Mixed(mixed) => self::mixed(model, mixed),
+                Done::Mixed(mixed) => {
+                    let effects = self::mixed(model, mixed);
+                    effects.into_iter().chain(ask_river(model)).collect()
+                }
                 Done::Ranked(ranked) => {
                     super::rank::ranked(model, ranked);
+                    ask_river(model).into_iter().collect()
+                }
+                Done::Down(down) => {
+                    if let Some(session) = model.session_mut() {
+                        match down {
+                            Ok(down) => (session.downstream, session.river_wrong) = (Some(*down), None),
+                            Err(failure) => session.river_wrong = Some(failure),
+                        }
+                    }
                     Vec::new()
                 }
             }

@@ -38,12 +38,11 @@ pub(super) fn act(model: &mut Model, action: Action) -> Vec<Effect> {
         Action::Down => chosen(model, 1, 0),
         Action::Left => chosen(model, 0, -1),
         Action::Right => chosen(model, 0, 1),
-        Action::More => nudged(model, Nudge::More),
-        Action::Less => nudged(model, Nudge::Less),
-        Action::MuchMore => nudged(model, Nudge::MuchMore),
-        Action::MuchLess => nudged(model, Nudge::MuchLess),
+        Action::More | Action::Less | Action::MuchMore | Action::MuchLess | Action::Enter => {
+            let cell = model.session().map(|s| s.mix.cell);
+            cell.map_or_else(Vec::new, |cell| edit(model, cell, action))
+        }
         Action::Toggle => toggled(model),
-        Action::Enter => typing(model),
         Action::Undo => back_and_forth(model, true),
         Action::Redo => back_and_forth(model, false),
         Action::Solve => solving(model),
@@ -70,6 +69,17 @@ pub(super) fn act(model: &mut Model, action: Action) -> Vec<Effect> {
         Action::PageUp => scrolled(model, false),
         Action::PageDown => scrolled(model, true),
         _ => Vec::new(),
+    }
+}
+
+/// Turns a cell or begins to type into it, as a key asks for.
+pub(super) fn edit(model: &mut Model, cell: Cell, action: Action) -> Vec<Effect> {
+    match action {
+        Action::More => nudged(model, cell, Nudge::More),
+        Action::Less => nudged(model, cell, Nudge::Less),
+        Action::MuchMore => nudged(model, cell, Nudge::MuchMore),
+        Action::MuchLess => nudged(model, cell, Nudge::MuchLess),
+        _ => typing(model, cell),
     }
 }
 
@@ -118,7 +128,7 @@ fn kept(model: &mut Model) -> Vec<Effect> {
     effects
 }
 
-fn back_and_forth(model: &mut Model, back: bool) -> Vec<Effect> {
+pub(super) fn back_and_forth(model: &mut Model, back: bool) -> Vec<Effect> {
     let Some(session) = model.session_mut() else { return Vec::new() };
     let before = session.draft().clone();
     let done = if back { session.history.undo() } else { session.history.redo() };
@@ -196,11 +206,10 @@ fn targets(session: &Session, draft: &Draft) -> Vec<Target> {
     draft.changed.targets.clone().unwrap_or_else(|| session.base.site().targets.clone())
 }
 
-/// Turns the cell chosen.
-fn nudged(model: &mut Model, nudge: Nudge) -> Vec<Effect> {
+/// Turns a cell.
+fn nudged(model: &mut Model, cell: Cell, nudge: Nudge) -> Vec<Effect> {
     let system = model.system();
     let Some(session) = model.session() else { return Vec::new() };
-    let cell = session.mix.cell;
     let now = value(session, cell);
     let of = |steps: [(f64, f64); 2], dimension: Dimension| {
         let (fine, large) = steps[usize::from(system == System::Si)];
@@ -235,7 +244,7 @@ fn nudged(model: &mut Model, nudge: Nudge) -> Vec<Effect> {
             let any = target.and_then(|t| t.preferred_c.or(t.low_c).or(t.high_c));
             match now.or(any) {
                 Some(value) => of(TEMPERATURE, Dimension::Temperature)(value),
-                None => return typing(model),
+                None => return typing(model, cell),
             }
         }
         Cell::Oxygen(_) => {
@@ -260,11 +269,10 @@ fn next_opening(outlet: &Outlet, now: f64, nudge: Nudge) -> f64 {
     beyond.min_by(|a, b| (a - now).abs().total_cmp(&(b - now).abs())).unwrap_or(now)
 }
 
-/// Begins to type into the cell chosen.
-pub(super) fn typing(model: &mut Model) -> Vec<Effect> {
+/// Begins to type into a cell.
+fn typing(model: &mut Model, cell: Cell) -> Vec<Effect> {
     let system = model.system();
     let Some(session) = model.session() else { return Vec::new() };
-    let cell = session.mix.cell;
     // what stands there can be typed over or mended: a bare number in the unit shown
     let plain = |value: f64, dimension: Dimension, decimals: u8| {
         figure(value, system.unit(dimension), decimals).replace(',', "")

@@ -6,7 +6,10 @@ mod mix;
 mod mouse;
 mod pool;
 mod rank;
+mod river;
 mod typing;
+
+use std::sync::Arc;
 
 use chrono::{DateTime, Utc};
 use crossterm::event::{KeyEvent, MouseEvent};
@@ -17,9 +20,11 @@ use crate::tasks::rank::RankAsked;
 use crate::tasks::{Asked, Given};
 use crate::units::System;
 
+pub(super) use river::rules;
+
 use super::keys::{Action, Place, action};
 use super::model::{Choice, Draft, Likes, Message, Model, Over, Screen, Session, Stage, Under};
-use super::view::{answer_text, mix_rows, rank_rows};
+use super::view::{answer_text, mix_rows, rank_rows, river_rows};
 use super::work::{Lane, On, Seen, Sent, Work};
 
 /// A message.
@@ -137,6 +142,7 @@ pub fn places(model: &Model) -> Vec<Place> {
                 Screen::Pool => Place::Pool,
                 Screen::Mix => Place::Mix,
                 Screen::Rank => Place::Rank,
+                Screen::River => Place::River,
             };
             vec![screen, Place::Site, Place::Everywhere]
         }
@@ -188,6 +194,7 @@ fn act(model: &mut Model, action: Action) -> Vec<Effect> {
                 Screen::Pool => pool::act(model, other),
                 Screen::Mix => mix::act(model, other),
                 Screen::Rank => rank::act(model, other),
+                Screen::River => river::act(model, other),
             },
         },
     }
@@ -201,7 +208,7 @@ fn to_screen(model: &mut Model, to: impl Fn(usize) -> usize) -> Vec<Effect> {
         }
     }
     model.message = None;
-    Vec::new()
+    ask_river(model).into_iter().collect()
 }
 
 /// Back: what is looked at on the pool screen first, then long work is stopped, then what was said is taken off.
@@ -226,6 +233,9 @@ fn back(model: &mut Model) -> Vec<Effect> {
     if model.session().is_some_and(|s| s.screen == Screen::Rank) {
         return rank::back(model);
     }
+    if model.session().is_some_and(|s| s.screen == Screen::River) {
+        river::back(model);
+    }
     Vec::new()
 }
 
@@ -233,6 +243,7 @@ fn copy(model: &mut Model) -> Vec<Effect> {
     let waits = model.quick.is_some();
     let old = model.session().is_some_and(|s| match s.screen {
         Screen::Rank => !s.ranks_now(),
+        Screen::River => !s.flows_now(),
         Screen::Pool | Screen::Mix => s.wrong.is_some() || !s.is_current() || waits,
     });
     if old {
@@ -338,6 +349,15 @@ fn ask_mixes(model: &mut Model, solve: Option<Given>) -> Option<Effect> {
         None => (On::Files(session.base.clone(), draft.changed.clone()), draft.tries.clone()),
     };
     Some(ask(model, Work::Mix { on, tries, solve }))
+}
+
+/// Asks for what arrives downstream, where that is looked at and not known yet; it is made of answers that are there.
+fn ask_river(model: &mut Model) -> Option<Effect> {
+    let session = model.session().filter(|s| s.screen == Screen::River && !s.flows_now())?;
+    let (given, answer) = (session.draft().tried()?.clone(), session.tried_now()?.clone());
+    let best = session.best_now().map(|(mix, given)| Box::new((given, mix.clone())));
+    let context = Arc::clone(session.context());
+    Some(ask(model, Work::River { context, tried: Box::new((given, answer)), best }))
 }
 
 /// Asks for the ranking.

@@ -50,7 +50,9 @@ pub(super) fn draw(model: &Model, area: Rect, buf: &mut Buffer) {
             if !words.is_empty() {
                 lines.push((words, role));
             }
-            if session.screen == Screen::Rank {
+            if session.screen == Screen::River {
+                lines.extend(super::river::in_short(model, session, width));
+            } else if session.screen == Screen::Rank {
                 for (line, role) in super::rank::in_short(model, session, width) {
                     lines.push((line, role));
                 }

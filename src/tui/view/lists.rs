@@ -49,6 +49,7 @@ fn here(model: &Model) -> Place {
             Screen::Pool => Place::Pool,
             Screen::Mix => Place::Mix,
             Screen::Rank => Place::Rank,
+            Screen::River => Place::River,
         },
         Stage::Sites { .. } => Place::Sites,
         Stage::Broken { .. } => Place::Problems,

@@ -6,6 +6,7 @@ mod lists;
 mod mix;
 mod pool;
 mod rank;
+mod river;
 mod water;
 mod write;
 
@@ -40,6 +41,8 @@ pub enum Hit {
     Cell(Cell),
     /// A mix of the ranking.
     Mix(usize),
+    /// A rule of the river screen.
+    Rule(usize),
 }
 
 /// Draws the model; where the cursor stands, while typing.
@@ -64,6 +67,7 @@ pub fn draw(model: &Model, area: Rect, buf: &mut Buffer) -> Option<Position> {
                 Screen::Pool => pool::draw(model, session, parts.body, buf),
                 Screen::Mix => mix::draw(model, session, parts.body, buf),
                 Screen::Rank => rank::draw(model, session, parts.body, buf),
+                Screen::River => river::draw(model, session, parts.body, buf),
             },
         }
     }
@@ -87,6 +91,7 @@ pub fn hit(model: &Model, column: u16, row: u16) -> Option<Hit> {
             Screen::Pool => pool::hit(model, session, parts.body, at),
             Screen::Mix => mix::hit(model, session, parts.body, at),
             Screen::Rank => rank::hit(model, session, parts.body, at),
+            Screen::River => river::hit(model, session, parts.body, at).map(Hit::Rule),
         },
         Stage::Opening { .. } | Stage::Broken { .. } => None,
     }
@@ -96,6 +101,12 @@ pub fn hit(model: &Model, column: u16, row: u16) -> Option<Hit> {
 pub(super) fn rank_rows(model: &Model) -> usize {
     let area = Rect::new(0, 0, model.size.0, model.size.1);
     model.session().map_or(0, |session| rank::last(model, session, frame::parts(model, area).body))
+}
+
+/// The furthest that what scrolls on the river screen can be scrolled.
+pub(super) fn river_rows(model: &Model) -> usize {
+    let area = Rect::new(0, 0, model.size.0, model.size.1);
+    model.session().map_or(0, |session| river::last(model, session, frame::parts(model, area).body))
 }
 
 /// The furthest that what is said on the mix screen can be scrolled.
@@ -129,5 +140,6 @@ pub(super) fn answer_text(model: &Model) -> Option<String> {
         Screen::Pool => session.pool_shown().map(|(context, answer)| text::pool(&in_units(context), answer)),
         Screen::Mix => Some(text::mix(&context, session.tried()?)),
         Screen::Rank => session.ranked.as_ref().map(|r| text::rank(&in_units(&r.context), &r.answer)),
+        Screen::River => session.downstream.as_ref().map(|d| text::river(&in_units(&d.context), &d.answer)),
     }
 }

@@ -21,8 +21,13 @@ proptest! {
         let Some(ready) = case.ready() else { return Ok(()) };
         let mix = ready.judged();
         prop_assert_eq!(mix.targets.len(), ready.site.targets.len(), "every span holds the day");
+        // of a steady day without a record: the rule's own range and floor, buffer counted in
         let judged = |t: &gatemix::mix::TargetStanding| {
-            ready.site.targets[t.target].room(t.value_c, t.oxygen_mg_l)
+            let rule = &ready.site.targets[t.target];
+            let low = t.value_c.zip(rule.low_kept_c()).map(|(v, low)| v - low);
+            let high = t.value_c.zip(rule.high_kept_c()).map(|(v, high)| high - v);
+            let air = t.oxygen_mg_l.zip(rule.oxygen_min_mg_l).map(|(o, least)| o - least);
+            [low, high, air].into_iter().flatten().reduce(f64::min)
         };
         let governing: Vec<_> = mix.targets.iter().filter(|t| t.governs).collect();
         let any = mix.targets.iter().any(|t| judged(t).is_some());

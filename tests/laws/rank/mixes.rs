@@ -226,7 +226,7 @@ impl Day<'_> {
         let mut has_floor = false;
         let least = |of: &[f64]| of.iter().copied().fold(f64::INFINITY, f64::min);
         let most = |of: &[f64]| of.iter().copied().fold(f64::NEG_INFINITY, f64::max);
-        let valid = |t: &&gatemix::target::Target| t.span.contains(question.date) && t.point == "dam";
+        let valid = |t: &&gatemix::target::Target| t.span.contains(question.day.date) && t.point == "dam";
         for rule in question.site.targets.iter().filter(valid) {
             let values = match rule.statistic {
                 Statistic::DailyMax | Statistic::SevenDayMeanOfMaxima => vec![most(self.temperatures)],

@@ -150,7 +150,8 @@ impl<'a> Works<'a> {
     }
 
     fn tried(&self, part: &Part, openings: &[f64], share: usize) -> Trial {
-        let Question { site, profile, date, blocks, .. } = *self.question;
+        let Question { site, profile, day, blocks, .. } = *self.question;
+        let date = day.date;
         let pool_m = profile.pool_m;
         let open: Vec<(usize, f64)> =
             part.outlets.iter().copied().zip(openings.iter().copied()).filter(|o| o.1 > 0.0).collect();

@@ -1,7 +1,7 @@
 //! Random small dams to rank, with what is asked of them. All of them are invented.
 
 use gatemix::mix::limits::Before;
-use gatemix::mix::{Gate, Setting};
+use gatemix::mix::{Day, Gate, Setting};
 use gatemix::profile::Profile;
 use gatemix::rank::{Criterion, Question};
 use gatemix::site::{Leakage, Opens, Position, Raw, RawOutlet, RawTarget, RawWell, Site};
@@ -36,6 +36,7 @@ pub(super) struct Case {
 pub(super) struct Dam {
     pub(super) site: Site,
     pub(super) profile: Profile,
+    pub(super) day: Day,
 }
 
 impl Case {
@@ -43,14 +44,14 @@ impl Case {
     pub(super) fn dam(&self) -> Option<Dam> {
         let site = checked(&self.raw);
         let profile = Profile::build(&cast(&self.water), &site, None).0?;
-        Some(Dam { site, profile })
+        Some(Dam { site, profile, day: day().into() })
     }
 
     pub(super) fn question<'a>(&'a self, dam: &'a Dam) -> Question<'a> {
         Question {
             site: &dam.site,
             profile: &dam.profile,
-            date: day(),
+            day: &dam.day,
             blocks: &self.blocks,
             now: self.now.as_ref(),
             before: self.before,

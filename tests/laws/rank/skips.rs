@@ -91,7 +91,8 @@ fn many() -> (Case, Dam) {
         without: Vec::new(),
         ..case(0, false)
     };
-    (asked, Dam { site, profile })
+    let day = crate::mix::sites::day().into();
+    (asked, Dam { site, profile, day })
 }
 
 /// Any mix: some parts open, each in any of its states, the steps shared out among them.

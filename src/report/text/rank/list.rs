@@ -110,6 +110,7 @@ pub fn standing(site: &Site, targets: &[TargetStanding], system: System) -> Stri
     let worst = |of: &dyn Fn(&TargetStanding) -> (Standing, Option<f64>)| {
         targets
             .iter()
+            .filter(|s| !s.wish)
             .map(of)
             .filter_map(|(standing, by)| Some((standing, by.filter(|b| *b > 0.0)?)))
             .max_by(|a, b| a.1.total_cmp(&b.1))
@@ -117,7 +118,7 @@ pub fn standing(site: &Site, targets: &[TargetStanding], system: System) -> Stri
     let unit = system.unit(Dimension::TemperatureDifference);
     let by = |amount: f64| if amount < 0.05 { "<0.1".to_owned() } else { format!("{amount:.1}") };
     let mut out = Vec::new();
-    if let Some((standing, miss)) = worst(&|s| s.temperature) {
+    if let Some((standing, miss)) = worst(&|s| (s.temperature.0, s.by_c(site))) {
         out.push(format!("{} {}", standing.word().to_uppercase(), by(unit.from_si(miss))));
     }
     if let Some((_, miss)) = worst(&|s| s.oxygen) {

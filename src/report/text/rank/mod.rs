@@ -19,7 +19,7 @@ use crate::tasks::rank::{NothingFits, RankAnswer, Shown};
 use crate::units::{Dimension, System, show};
 
 use super::gates::openings;
-use super::mix::range;
+use super::targets::{named, range};
 use super::{flow, labelled, oxygen, temperature, wrapped};
 
 /// What was asked, the list and what follows from it.
@@ -27,9 +27,9 @@ pub(super) fn body(context: &Context, answer: &RankAnswer) -> String {
     let (site, system) = (context.site(), context.system);
     let mut out = labelled("Release", &asked(context, answer, system));
     let date = context.on.date_naive();
-    let valid: Vec<&Target> = site.targets.iter().filter(|t| t.span.contains(date)).collect();
+    let valid: Vec<&Target> = site.targets_on(date).map(|(_, t)| t).collect();
     for rule in &valid {
-        out.push_str(&labelled("Target", &format!("{}: {}", harmless(&rule.name), range(rule, system))));
+        out.push_str(&labelled("Target", &format!("{}: {}", named(rule, system), range(rule, system))));
     }
     if valid.is_empty() {
         out.push_str(&labelled("Target", "none is valid on this date"));

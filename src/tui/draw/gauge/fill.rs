@@ -3,9 +3,9 @@
 use crate::mix::{Mix, Spread, TargetStanding};
 use crate::problem::harmless;
 use crate::site::Site;
-use crate::target::{Statistic, Target};
+use crate::target::{Basis, DAM, Target};
 use crate::tasks::rank::Shown;
-use crate::units::{Dimension, System};
+use crate::units::{Dimension, System, in_system};
 
 use super::{Attainable, Gauge, Held, Reading};
 
@@ -60,6 +60,12 @@ fn no_target(release: Release, of_kind: &'static str) -> &'static str {
     if release.targets.is_empty() { "no target on this date" } else { of_kind }
 }
 
+/// The name of a rule, with its point where that is not the dam.
+fn placed(rule: &Target) -> String {
+    let name = harmless(&rule.name);
+    if rule.point == DAM { name } else { format!("{name} at {}", harmless(&rule.point)) }
+}
+
 impl Gauge {
     /// The gauge of the temperature; attainable in C.
     pub fn temperature(
@@ -71,19 +77,23 @@ impl Gauge {
     ) -> Self {
         let several = tried.targets.len() > 1;
         let held = |s: &TargetStanding, rule: &Target| {
-            (rule.low_c.is_some() || rule.high_c.is_some()).then(|| Held {
-                name: harmless(&rule.name),
-                low: rule.low_c,
-                high: rule.high_c,
-                preferred: rule.preferred_c,
-                buffer: rule.buffer_c,
-                value: s.value_c,
-                statistic: rule.statistic.name().replace('_', " "),
+            // on an axis of temperatures a rule of another kind stands as what it leaves to today's
+            let plain = rule.is_of_temperature() && s.basis != Basis::Observed;
+            let [low, high] = s.left_c;
+            rule.has_range().then(|| Held {
+                name: placed(rule),
+                low: if plain { rule.low_c } else { low },
+                high: if plain { rule.high_c } else { high },
+                preferred: rule.preferred_c.filter(|_| rule.is_of_temperature()),
+                buffer: if plain { rule.buffer_c } else { 0.0 },
+                value: if plain { s.value_c } else { s.figure_c },
+                statistic: if plain { in_system(&rule.statistic.words(), system) } else { "today".into() },
                 standing: s.temperature.0,
-                by: s.temperature.1,
+                by: s.by_c(site),
                 share: s.share_inside,
-                share_both: s.share_inside_both.filter(|_| rule.oxygen_min_mg_l.is_some()),
+                share_both: s.share_inside_both.filter(|_| rule.has_floor()),
                 governs: several && s.governs,
+                example: rule.example,
             })
         };
         Self {
@@ -109,20 +119,20 @@ impl Gauge {
     ) -> Self {
         let several = tried.targets.len() > 1;
         let held = |s: &TargetStanding, rule: &Target| {
-            rule.oxygen_min_mg_l.map(|least| Held {
-                name: harmless(&rule.name),
+            rule.oxygen_min_mg_l.or(s.floor_mg_l).map(|least| Held {
+                name: placed(rule),
                 low: Some(least),
                 high: None,
                 preferred: None,
                 buffer: 0.0,
                 value: s.oxygen_mg_l,
-                statistic: if rule.statistic == Statistic::DailyMean { "daily mean" } else { "least" }
-                    .to_owned(),
+                statistic: rule.oxygen_statistic().words().to_owned(),
                 standing: s.oxygen.0,
                 by: s.oxygen.1,
                 share: s.oxygen_share_inside,
                 share_both: None,
                 governs: several && s.governs,
+                example: rule.example,
             })
         };
         Self {

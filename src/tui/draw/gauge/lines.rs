@@ -250,6 +250,7 @@ impl Gauge {
             out.push(format!("buffer {:.1} {unit}", self.difference(held.buffer)));
         }
         out.extend(held.preferred.map(|p| format!("P preferred {}", with_unit(p))));
+        out.extend(held.example.then(|| text::EXAMPLE.to_owned()));
         out
     }
 

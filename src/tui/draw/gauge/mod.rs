@@ -54,6 +54,8 @@ pub struct Held {
     pub share_both: Option<f64>,
     /// Whether it is the strictest of several.
     pub governs: bool,
+    /// Its values are an example.
+    pub example: bool,
 }
 
 /// The coldest to warmest, or least to most oxygen, that any allowed mix gives.

@@ -39,6 +39,7 @@ fn warm() -> Gauge {
         share: Some(0.92),
         share_both: Some(0.55),
         governs: false,
+        example: false,
     };
     Gauge {
         title: "Temperature",

@@ -1,6 +1,7 @@
 //! The picture of a ranking.
 
 use crate::site::Site;
+use crate::target::{DAM, Target};
 use crate::tasks::rank::{RankAnswer, Shown};
 use crate::units::System;
 
@@ -17,15 +18,17 @@ impl TradePicture {
             .collect();
         // every shown mix is held against the same targets: those valid on the date
         let held = answer.mixes.first().or(answer.now.as_ref()).map_or(&[][..], |shown| &shown.targets);
-        let rules = || held.iter().filter_map(|s| site.targets.get(s.target));
+        // its axes are those of the release: rules of other places and kinds stand in the words beside it
+        let of_release = |rule: &&Target| rule.point == DAM && rule.is_of_temperature() && !rule.soft;
+        let rules = || held.iter().filter_map(|s| site.targets.get(s.target)).filter(of_release);
         Self {
             system,
             mixes: answer.mixes.iter().map(point).collect(),
             unbeaten,
             now: answer.now.as_ref().map(point),
             selected,
-            low_c: rules().filter_map(crate::target::Target::low_kept_c).reduce(f64::max),
-            high_c: rules().filter_map(crate::target::Target::high_kept_c).reduce(f64::min),
+            low_c: rules().filter_map(Target::low_kept_c).reduce(f64::max),
+            high_c: rules().filter_map(Target::high_kept_c).reduce(f64::min),
             preferred_c: rules().find_map(|t| t.preferred_c),
             floor_mg_l: rules().filter_map(|t| t.oxygen_min_mg_l).reduce(f64::max),
             of_day: answer.blocks.len() > 1,

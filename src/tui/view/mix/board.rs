@@ -334,7 +334,7 @@ impl Board<'_> {
 }
 
 fn target_words(i: usize, target: &Target, system: System) -> [(Cell, String); 4] {
-    let unit = system.unit(Dimension::Temperature);
+    let unit = system.unit(target.dimension());
     let warm =
         |word: &str, c: Option<f64>| format!("{word} {}", c.map_or("-".into(), |c| figure(c, unit, 1)));
     [

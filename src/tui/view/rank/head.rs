@@ -2,9 +2,8 @@
 
 use ratatui::layout::Rect;
 
-use crate::problem::harmless;
 use crate::rank::Criterion;
-use crate::report::text::{openings, range, rank};
+use crate::report::text::{named, openings, range, rank};
 use crate::tasks::rank::Shown;
 use crate::tui::look::Role;
 use crate::tui::model::{Model, Session};
@@ -30,9 +29,9 @@ pub(super) fn lines(screen: &Screen, area: Rect) -> Lines {
     let words = format!("{}, by {}", rank::release(context, answer, system), by.join(", "));
     said.push((words, Role::Strong));
     let date = context.on.date_naive();
-    let valid: Vec<_> = context.site().targets.iter().filter(|t| t.span.contains(date)).collect();
+    let valid: Vec<_> = context.site().targets_on(date).map(|(_, t)| t).collect();
     for rule in valid.iter().filter(|_| area.height >= TALL) {
-        said.push((format!("target {}: {}", harmless(&rule.name), range(rule, system)), Role::Plain));
+        said.push((format!("target {}: {}", named(rule, system), range(rule, system)), Role::Plain));
     }
     if valid.is_empty() {
         said.push(("no target is valid on this date".to_owned(), Role::Plain));

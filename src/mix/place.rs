@@ -1,0 +1,205 @@
+//! The day's water at the places where rules apply: at the dam, and as the river carries it to the points.
+//!
+//! Methods: `docs/methods.md`, sections 6 and 7.
+
+use crate::river::{self, AtPoint, Course};
+use crate::site::Site;
+use crate::target::{Air, Figure, OxygenFigure, Today};
+use crate::water;
+
+use super::blend::Blend;
+use super::day::Day;
+use super::links::Links;
+use super::standing::Part;
+
+/// What the span of releases that links are made for goes beyond those asked about, C (choice).
+const BESIDE_C: f64 = 0.5;
+
+/// A day's water at one place.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(super) struct Water {
+    mean_c: f64,
+    /// Greatest and least.
+    range_c: Option<(f64, f64)>,
+    hourly_change_c: Option<f64>,
+    oxygen_mg_l: [Option<f64>; 2],
+    /// Saturation, mg/L.
+    saturation_mg_l: Option<f64>,
+}
+
+impl Water {
+    /// The figure of today that a rule is held against; of every reading the one farthest outside.
+    pub(super) fn figure_c(&self, today: &Today) -> Option<f64> {
+        match today.figure {
+            Figure::Mean => Some(self.mean_c),
+            Figure::Max => Some(self.range_c?.0),
+            Figure::Min => Some(self.range_c?.1),
+            Figure::HourlyChange => self.hourly_change_c,
+            Figure::Both => {
+                let (most, least) = self.range_c?;
+                let below = today.outside_c(least);
+                Some(if below < 0.0 && -below > today.outside_c(most) { least } else { most })
+            }
+        }
+    }
+
+    /// The oxygen that a floor is held against, mg/L.
+    pub(super) fn oxygen_mg_l(&self, air: &Air) -> Option<f64> {
+        self.oxygen_mg_l[usize::from(air.figure == OxygenFigure::Min)]
+    }
+
+    /// Its mean or its least oxygen, mg/L.
+    pub(super) fn least_mg_l(&self, figure: OxygenFigure) -> Option<f64> {
+        self.oxygen_mg_l[usize::from(figure == OxygenFigure::Min)]
+    }
+
+    /// The floor of that oxygen, mg/L.
+    pub(super) fn floor_mg_l(&self, air: &Air) -> Option<f64> {
+        if air.share { self.saturation_mg_l.map(|s| air.floor_mg_l(s)) } else { Some(air.floor) }
+    }
+
+    /// Saturation there, mg/L.
+    pub(super) fn saturation_mg_l(&self) -> Option<f64> {
+        self.saturation_mg_l
+    }
+}
+
+/// Oxygen at saturation below the dam, mg/L, of water of a temperature (C): at the pressure of the foot of the dam.
+pub fn saturation_below_mg_l(site: &Site, temperature_c: f64, salt_g_per_kg: f64) -> f64 {
+    let pressure_atm = site.surface_pressure_atm(site.pool.bed_m);
+    water::saturation_mg_l(temperature_c, salt_g_per_kg, pressure_atm)
+}
+
+/// The oxygen of a release that rules are held against, mg/L.
+pub(super) fn oxygen(blend: &Blend) -> Option<f64> {
+    blend.oxygen_mg_l
+}
+
+/// Water at the dam of temperatures (C) and oxygens (mg/L) that each hold for a share of the day.
+pub(super) fn at_dam(site: &Site, parts: &[(f64, f64, Option<f64>)], salt_g_per_kg: f64) -> Water {
+    let temperatures = || parts.iter().map(|p| p.1);
+    let oxygens: Option<Vec<f64>> = parts.iter().map(|p| p.2).collect();
+    let mean_c = parts.iter().map(|p| p.0 * p.1).sum();
+    // the day comes round: its last part is followed by its first
+    let next = temperatures().skip(1).chain(temperatures().take(1));
+    let change = temperatures().zip(next).map(|(a, b)| (a - b).abs()).fold(0.0, f64::max);
+    Water {
+        mean_c,
+        range_c: Some((
+            temperatures().fold(f64::NEG_INFINITY, f64::max),
+            temperatures().fold(f64::INFINITY, f64::min),
+        )),
+        hourly_change_c: Some(change),
+        oxygen_mg_l: [
+            parts.iter().map(|p| Some(p.0 * p.2?)).sum(),
+            oxygens.and_then(|o| o.into_iter().reduce(f64::min)),
+        ],
+        saturation_mg_l: Some(saturation_below_mg_l(site, mean_c, salt_g_per_kg)),
+    }
+}
+
+/// Water at a point.
+fn at_point(at: &AtPoint) -> Water {
+    let f = &at.figures;
+    let full = f.oxygen_share.zip(f.oxygen_mean_mg_l).filter(|(share, _)| share.1 > 0.0);
+    Water {
+        mean_c: f.mean_c,
+        range_c: f.range_c,
+        hourly_change_c: f.hourly_change_c,
+        oxygen_mg_l: [f.oxygen_mean_mg_l, f.oxygen_min_mg_l],
+        saturation_mg_l: full.map(|(share, mean)| mean / share.1),
+    }
+}
+
+/// The places of a day with its release.
+pub(super) struct Places<'a> {
+    site: &'a Site,
+    parts: &'a [Part<'a>],
+    dam: Water,
+    /// The way down the river, where it is known.
+    pub(super) course: Option<Course>,
+    /// How points see the release.
+    pub(super) links: Links,
+    /// Mean temperature of the release by flow, C.
+    mean_c: f64,
+}
+
+impl<'a> Places<'a> {
+    pub(super) fn new(site: &'a Site, parts: &'a [Part<'a>], day: &Day, river: bool) -> Self {
+        let at = |p: &Part| (p.0, p.1.temperature_c, oxygen(p.1));
+        let of_parts: Vec<(f64, f64, Option<f64>)> = parts.iter().map(at).collect();
+        let conditions = day.conditions.as_deref().filter(|_| river);
+        let down: Vec<river::Part> = parts
+            .iter()
+            .map(|p| river::Part {
+                hours: 24.0 * p.0,
+                flow_m3s: p.1.flow_m3s,
+                temperature_c: p.1.temperature_c,
+                oxygen_mg_l: oxygen(p.1),
+            })
+            .collect();
+        let course = conditions.and_then(|c| river::course(site, c, day.date, &down));
+        let flows: Vec<(f64, f64)> = down.iter().map(|p| (p.hours, p.flow_m3s)).collect();
+        let cases = parts.iter().flat_map(|p| p.2.cases.iter().map(|c| c.0));
+        let all = || of_parts.iter().map(|p| p.1).chain(cases.clone());
+        let span = (
+            all().fold(f64::INFINITY, f64::min) - BESIDE_C,
+            all().fold(f64::NEG_INFINITY, f64::max) + BESIDE_C,
+        );
+        let links = if course.is_some() { Links::new(site, day, &flows, span) } else { Links::default() };
+        let salt = parts.first().map_or(0.0, |p| p.1.salt_g_per_kg);
+        let mean_c = by_flow(parts, |p| Some(p.1.temperature_c)).unwrap_or(0.0);
+        Self { site, parts, dam: at_dam(site, &of_parts, salt), course, links, mean_c }
+    }
+
+    /// The day's water at the dam, or at a point of the river.
+    pub(super) fn water(&self, point: Option<usize>) -> Option<Water> {
+        let Some(point) = point else { return Some(self.dam) };
+        self.course.as_ref()?.points.iter().find(|p| p.point == point).map(at_point)
+    }
+
+    /// The same water in a perturbed case: at a point it differs from the central one by what its link makes of the
+    /// difference of the release.
+    pub(super) fn case(&self, point: Option<usize>, case: usize) -> Option<Water> {
+        let of = |p: &Part| p.2.cases.get(case).copied();
+        let Some(point) = point else {
+            let parts: Option<Vec<(f64, f64, Option<f64>)>> =
+                self.parts.iter().map(|p| of(p).map(|(t, o)| (p.0, t, o))).collect();
+            let salt = self.parts.first().map_or(0.0, |p| p.1.salt_g_per_kg);
+            return Some(at_dam(self.site, &parts?, salt));
+        };
+        let (middle, link) = (self.water(Some(point))?, self.links.get(point)?);
+        let t = by_flow(self.parts, |p| of(p).map(|c| c.0))?;
+        let shift = |curve: river::Curve| curve.at(t) - curve.at(self.mean_c);
+        let aired = |of_release: Option<(river::Curve, f64)>| {
+            let (curve, slope) = of_release?;
+            let more = by_flow(self.parts, |p| Some(of(p)?.1? - oxygen(p.1)?))?;
+            Some(shift(curve) + slope * more)
+        };
+        let add = |value: Option<f64>, more: Option<f64>| Some((value? + more?).max(0.0));
+        Some(Water {
+            mean_c: middle.mean_c + shift(link.mean_c),
+            range_c: middle
+                .range_c
+                .zip(link.range_c)
+                .map(|(range, curves)| (range.0 + shift(curves.0), range.1 + shift(curves.1))),
+            hourly_change_c: None,
+            oxygen_mg_l: [
+                add(middle.oxygen_mg_l[0], aired(link.oxygen_mean)),
+                add(middle.oxygen_mg_l[1], aired(link.oxygen_min)),
+            ],
+            saturation_mg_l: middle.saturation_mg_l.map(|s| s + shift(link.saturation_mg_l)),
+        })
+    }
+}
+
+/// Mean over the parts of a day by their flow; `None` where that of any is.
+fn by_flow(parts: &[Part], of: impl Fn(&Part) -> Option<f64>) -> Option<f64> {
+    let (mut sum, mut flow) = (0.0, 0.0);
+    for part in parts {
+        let weight = part.0 * part.1.flow_m3s;
+        sum += weight * of(part)?;
+        flow += weight;
+    }
+    (flow > 0.0).then(|| sum / flow)
+}

@@ -1,0 +1,81 @@
+//! The days ahead, and when a change must leave the dam.
+
+use crate::problem::harmless;
+use crate::tasks::Context;
+use crate::tasks::river::{Arriving, RiverAnswer, Timely};
+use crate::units::{Dimension, System, figure};
+
+use super::super::{step, temperature};
+
+/// Columns of the date, of the air, and of each figure.
+const DATE: usize = 17;
+const AIR: usize = 8;
+const FIGURE: usize = 13;
+
+/// What arrives day by day, a line a day under a heading: of each point the mean of every release, and in brackets the
+/// greatest where hours are known.
+pub fn days(context: &Context, answer: &RiverAnswer, system: System) -> Vec<String> {
+    let Some(river) = &context.site().river else {
+        return vec!["The site file tells nothing of the river.".to_owned()];
+    };
+    if answer.days.iter().all(|d| d.ways.iter().all(Vec::is_empty)) {
+        return vec!["What arrives is not known: see what is said of the river.".to_owned()];
+    }
+    let unit = system.unit(Dimension::Temperature);
+    let mut head = format!("{:<DATE$}{:<AIR$}", "leaves the dam", "air");
+    for (i, _) in river.points.iter().enumerate() {
+        for way in &answer.ways {
+            head.push_str(&format!("{:<FIGURE$}", format!("{} {}", i + 1, way.which.word())));
+        }
+    }
+    let mut out = vec![head.trim_end().to_owned()];
+    for day in &answer.days {
+        let air = day.air_c.map_or_else(|| "-".to_owned(), |c| figure(c, unit, 1));
+        let mark = if day.forecast { "forecast" } else { "" };
+        let mut line = format!("{:<DATE$}{air:<AIR$}", format!("{} {mark}", day.date.format("%m-%d")));
+        for point in 0..river.points.len() {
+            for way in 0..answer.ways.len() {
+                line.push_str(&format!("{:<FIGURE$}", figures(day, way, point, system)));
+            }
+        }
+        out.push(line.trim_end().to_owned());
+    }
+    let names = river.points.iter().enumerate().map(|(i, p)| format!("{} {}", i + 1, harmless(&p.name)));
+    let names: Vec<String> = names.collect();
+    out.push(format!("{}; {}, mean (greatest)", names.join(", "), unit.symbol()));
+    out
+}
+
+fn figures(day: &Arriving, way: usize, point: usize, system: System) -> String {
+    let unit = system.unit(Dimension::Temperature);
+    let Some(f) = day.ways.get(way).and_then(|points| points.get(point)) else { return "-".to_owned() };
+    match f.range_c {
+        Some((greatest, _)) => format!("{} ({})", figure(f.mean_c, unit, 1), figure(greatest, unit, 1)),
+        None => figure(f.mean_c, unit, 1),
+    }
+}
+
+/// When a change must leave the dam to be in time, by point.
+pub fn timely_words(context: &Context, answer: &RiverAnswer, system: System) -> Vec<String> {
+    let site = context.site();
+    let points = site.river.as_ref().map_or(&[][..], |r| &r.points);
+    let words = |t: &Timely| {
+        let (point, rule) = (points.get(t.point)?, site.targets.get(t.target)?);
+        let days = if t.days == 1 { "1 day".to_owned() } else { format!("{} days", t.days) };
+        let late = if t.late { ", which is past" } else { "" };
+        Some(format!(
+            "{}: held, it is above `{}` for {days} from {} ({} over by {}): a change must leave the dam by {}{late}; \
+             its water takes {:.1} h, its rise is there from {:.1} h, in bulk {:.1} h",
+            harmless(&point.name),
+            harmless(&rule.name),
+            t.day.format("%m-%d"),
+            temperature(t.value_c, system),
+            step(t.by_c, system),
+            t.leave_by.format("%m-%d %H:%M"),
+            t.travel_h,
+            t.rise_first_h,
+            t.rise_h
+        ))
+    };
+    answer.timely.iter().filter_map(words).collect()
+}

@@ -1,0 +1,132 @@
+//! What arrives downstream, in words.
+
+mod ahead;
+mod places;
+mod record;
+mod rules;
+
+use crate::problem::{Problem, harmless};
+use crate::tasks::Context;
+use crate::tasks::river::{RiverAnswer, Way, Which};
+use crate::units::System;
+
+use super::{flow, labelled, list, setting_words, wrapped};
+
+pub use ahead::{days, timely_words};
+pub use places::{PlaceRow, places, stage_words, window_words};
+pub use record::{PROVISIONAL, SIGNS, calendar, record};
+pub use rules::{RuleRow, RuleStanding, conflicts, rules};
+
+/// Columns of a label of the table of places, and of each place.
+const LABEL: usize = 20;
+const CELL: usize = 19;
+
+/// Everything but head and caution.
+pub(super) fn body(context: &Context, answer: &RiverAnswer) -> String {
+    let system = context.system;
+    let mut out = String::new();
+    for way in &answer.ways {
+        out.push_str(&labelled(title(way.which), &set_words(context, way, system)));
+    }
+    out.push('\n');
+    out.push_str(&table(&places(context, answer, system)));
+    out.push('\n');
+    out.push_str(&needed(context, answer, system));
+    out.push_str(&standings(context, answer, system));
+    for (i, line) in days(context, answer, system).into_iter().enumerate() {
+        out.push_str(if i == 0 { "Day by day, each release held\n  " } else { "  " });
+        out.push_str(&line);
+        out.push('\n');
+    }
+    out.push('\n');
+    let mut recorded = String::from("Recorded\n");
+    for (line, _) in record(context, answer, system, super::WIDTH - 2) {
+        recorded.push_str(&format!("  {line}\n"));
+    }
+    out.push_str(&recorded);
+    out.push('\n');
+    let notes: Vec<&Problem> = answer.notes.iter().collect();
+    out.push_str(&list("The river", &notes, false, system));
+    out
+}
+
+fn title(which: Which) -> &'static str {
+    match which {
+        Which::Now => "Now",
+        Which::Tried => "Tried",
+        Which::Best => "Best",
+    }
+}
+
+/// What a way sets and its total: `N3 600 cfs, S3 600 cfs = 1,200 cfs`; by part of the day where there are several.
+pub fn set_words(context: &Context, way: &Way, system: System) -> String {
+    let site = context.site();
+    let part = |p: &crate::tasks::river::WayPart| {
+        let hours = if way.parts.len() > 1 { format!("{:.1} h ", 24.0 * p.share) } else { String::new() };
+        format!("{hours}{} = {}", setting_words(site, &p.setting, system), flow(p.release.flow_m3s, system))
+    };
+    way.parts.iter().map(part).collect::<Vec<_>>().join("; ")
+}
+
+/// The table of places in plain columns; places that have no room go into a second one below.
+fn table(rows: &[PlaceRow]) -> String {
+    let count = rows.first().map_or(0, |r| r.cells.len());
+    let each = (super::WIDTH - LABEL) / CELL;
+    let mut out = String::new();
+    for first in (0..count).step_by(each) {
+        for row in rows {
+            let cells = row.cells.iter().skip(first).take(each);
+            let cells: String = cells.map(|c| format!("{:<CELL$}", super::fitted(c, CELL - 1))).collect();
+            out.push_str(format!("{:<LABEL$}{cells}", row.label).trim_end());
+            out.push('\n');
+        }
+    }
+    out
+}
+
+/// The release each place would need, the change in time for what is coming, the stage.
+fn needed(context: &Context, answer: &RiverAnswer, system: System) -> String {
+    let points = context.site().river.as_ref().map_or(&[][..], |r| &r.points);
+    let mut out = String::from("Release needed today\n");
+    if answer.windows.is_empty() {
+        out.push_str("  no rule is valid on this date\n");
+    }
+    for window in &answer.windows {
+        let name =
+            window.point.and_then(|i| points.get(i)).map_or("the dam".to_owned(), |p| harmless(&p.name));
+        out.push_str(&wrapped(&format!("  {name}: {}", window_words(window, system)), 4));
+    }
+    for words in timely_words(context, answer, system) {
+        out.push_str(&wrapped(&format!("  ! {words}"), 4));
+    }
+    for (i, point) in points.iter().enumerate() {
+        if let Some(words) = stage_words(context, answer, i, system) {
+            out.push_str(&wrapped(&format!("  {}: {words}", harmless(&point.name)), 4));
+        }
+    }
+    out.push('\n');
+    out
+}
+
+/// Every rule valid on the date with how each release stands.
+fn standings(context: &Context, answer: &RiverAnswer, system: System) -> String {
+    let mut out = String::from("Rules\n");
+    let rows = rules(context, answer, system);
+    if rows.is_empty() {
+        out.push_str("  none is valid on this date\n");
+    }
+    for row in &rows {
+        let governs = if row.governs { ": governs" } else { "" };
+        out.push_str(&wrapped(&format!("  {} at {} ({}){governs}", row.name, row.point, row.asks), 4));
+        for standing in &row.standings {
+            let mark = if standing.missed { "!" } else { " " };
+            out.push_str(&wrapped(&format!("  {mark} {}", standing.words), 6));
+        }
+        out.push_str(&wrapped(&format!("    {}", row.source), 6));
+    }
+    for words in conflicts(context, answer, system) {
+        out.push_str(&wrapped(&format!("  ! {words}"), 4));
+    }
+    out.push('\n');
+    out
+}

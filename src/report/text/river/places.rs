@@ -1,0 +1,142 @@
+//! The dam and every point side by side: when water arrives there, what it is, what would be asked of the release.
+
+use crate::problem::harmless;
+use crate::river::AtPoint;
+use crate::site::{Point, River};
+use crate::tasks::Context;
+use crate::tasks::river::{RiverAnswer, Way, Which, Window};
+use crate::units::{Dimension, System, figure, show};
+
+use super::super::{length, oxygen, temperature};
+
+/// A row of the table of places: a label, and a cell for the dam and for each point.
+#[derive(Debug, Clone, PartialEq)]
+pub struct PlaceRow {
+    /// What it tells.
+    pub label: String,
+    /// Of which release, where it is of one.
+    pub of: Option<Which>,
+    /// The cells, the dam first.
+    pub cells: Vec<String>,
+}
+
+/// Where nothing is to be told.
+const NONE: &str = "-";
+
+/// The table of places; the first row names them.
+pub fn places(context: &Context, answer: &RiverAnswer, system: System) -> Vec<PlaceRow> {
+    let points = points(context);
+    let distance = |p: &Point| show(p.at_m, Dimension::Distance, system, 1);
+    let row = |label: &str, dam: &str, of: &dyn Fn(usize, &Point) -> String| PlaceRow {
+        label: label.to_owned(),
+        of: None,
+        cells: std::iter::once(dam.to_owned())
+            .chain(points.iter().enumerate().map(|(i, p)| of(i, p)))
+            .collect(),
+    };
+    let mut out = vec![
+        row("", "dam", &|i, p| format!("{} {}", i + 1, harmless(&p.name))),
+        row("from the dam", NONE, &|_, p| distance(p)),
+    ];
+    if let Some(course) = answer.spoken().and_then(|w| w.course.as_ref()) {
+        let hours = |of: fn(&AtPoint) -> f64| {
+            move |i: usize, _: &Point| {
+                course.points.get(i).map_or_else(|| NONE.into(), |a| format!("{:.1} h", of(a)))
+            }
+        };
+        out.push(row("water takes", NONE, &hours(|a| a.travel_h)));
+        out.push(row("first rise possible", NONE, &hours(|a| a.rise_first_h)));
+        out.push(row("bulk of a rise", NONE, &hours(|a| a.rise_h)));
+        out.push(row("warning time", NONE, &|_, p| {
+            p.warning_h.map_or_else(|| NONE.into(), |h| format!("{h:.1} h"))
+        }));
+    }
+    for way in &answer.ways {
+        out.extend(of_way(way, points.len(), system));
+    }
+    out
+}
+
+/// The points of the site's river.
+fn points(context: &Context) -> &[Point] {
+    context.site().river.as_ref().map_or(&[], |r: &River| &r.points)
+}
+
+fn of_way(way: &Way, points: usize, system: System) -> Vec<PlaceRow> {
+    let name = way.which.word();
+    let at = |i: usize| way.course.as_ref().and_then(|c| c.points.get(i));
+    let unit = system.unit(Dimension::Temperature);
+    let row = |what: &str, dam: String, of: &dyn Fn(usize) -> Option<String>| PlaceRow {
+        label: format!("{name} {what}"),
+        of: Some(way.which),
+        cells: std::iter::once(dam)
+            .chain((0..points).map(|i| of(i).unwrap_or_else(|| NONE.into())))
+            .collect(),
+    };
+    let band = |band: Option<(f64, f64)>| {
+        band.map(|(low, high)| format!("{} to {}", figure(low, unit, 1), figure(high, unit, 1)))
+    };
+    let of_day = way.at_dam();
+    let greatest = way.parts.iter().map(|p| p.release.temperature_c).fold(f64::NEG_INFINITY, f64::max);
+    let mut out = vec![
+        row("mean", temperature(way.temperature_c(), system), &|i| {
+            Some(temperature(at(i)?.figures.mean_c, system))
+        }),
+        row("10-90 %", band(of_day.band_c()).unwrap_or_else(|| NONE.into()), &|i| {
+            band(way.spreads.get(i)?.band_c())
+        }),
+        row("greatest", temperature(greatest, system), &|i| {
+            let (greatest, _) = at(i)?.figures.range_c?;
+            Some(temperature(greatest, system))
+        }),
+        row("oxygen", oxygen(way.oxygen_mg_l()), &|i| Some(oxygen(at(i)?.figures.oxygen_mean_mg_l))),
+    ];
+    if way.course.is_none() {
+        out.truncate(2);
+    }
+    out
+}
+
+/// The release a point would need, in words: `50.0 to 57.0 F, oxygen from 5.1 mg/L`.
+pub fn window_words(window: &Window, system: System) -> String {
+    let unit = system.unit(Dimension::Temperature);
+    let shown = |c: f64| temperature(c, system);
+    let mut parts = Vec::new();
+    if window.reachable {
+        match (window.low_c, window.high_c) {
+            (Some(low), Some(high)) => parts.push(format!("{} to {}", figure(low, unit, 1), shown(high))),
+            (Some(low), None) => parts.push(format!("from {}", shown(low))),
+            (None, Some(high)) => parts.push(format!("to {}", shown(high))),
+            (None, None) if window.asked_c == [None, None] => {}
+            (None, None) => parts.push("any temperature".to_owned()),
+        }
+    } else {
+        parts.push("OUT OF REACH: no release keeps its range".to_owned());
+    }
+    if let Some(least) = window.oxygen_min_mg_l {
+        parts.push(format!("oxygen from {least:.1} mg/L"));
+    }
+    parts.extend(window.unknown.iter().map(|words| harmless(words)));
+    if parts.is_empty() { "nothing is asked".to_owned() } else { parts.join(", ") }
+}
+
+/// How the stage at a point differs from now, in words; that it is not computed where no rating is given.
+pub fn stage_words(context: &Context, answer: &RiverAnswer, point: usize, system: System) -> Option<String> {
+    let point_at = points(context).get(point)?;
+    if point_at.rating.is_empty() {
+        return Some("stage rise not computed: no rating given".to_owned());
+    }
+    let flow = |which: Which| {
+        let way = answer.ways.iter().find(|w| w.which == which)?;
+        Some(way.course.as_ref()?.points.get(point)?.figures.flow_m3s)
+    };
+    let now = point_at.stage_m(flow(Which::Now)?)?;
+    let words = [Which::Tried, Which::Best].into_iter().filter_map(|which| {
+        let stage = point_at.stage_m(flow(which)?)?;
+        let by = stage - now;
+        let change = if by < 0.0 { "fall" } else { "rise" };
+        Some(format!("{} {change} of stage {}", which.word(), length(by.abs(), system)))
+    });
+    let words: Vec<String> = words.collect();
+    (!words.is_empty()).then(|| words.join(", "))
+}

@@ -1,0 +1,113 @@
+//! What stations recorded, against the rules: days outside, by how much, and a calendar of them.
+
+use chrono::NaiveDate;
+
+use crate::problem::harmless;
+use crate::target::{Held, Mark, Standing, Tally, Target};
+use crate::tasks::Context;
+use crate::tasks::river::RiverAnswer;
+use crate::units::{Dimension, System};
+
+use super::super::wrapped_at;
+use super::rules::{asks, floor, source};
+
+/// What every statement about a record carries.
+pub const PROVISIONAL: &str = "from provisional data; not a compliance determination";
+
+/// Signs of the calendar, with their meaning.
+pub const SIGNS: &str = ". inside  # above  v below  ? too little recorded";
+
+/// Lines about every record, wrapped at a width; the first of each rule is strong.
+pub fn record(context: &Context, answer: &RiverAnswer, system: System, width: usize) -> Vec<(String, bool)> {
+    let mut out = Vec::new();
+    if answer.observed.is_empty() {
+        say(&mut out, "No station has recorded anything on days on which a rule is valid.", width, true);
+        return out;
+    }
+    for observed in &answer.observed {
+        let Some(rule) = context.site().targets.get(observed.target) else { continue };
+        let record = &observed.record;
+        let parts = [
+            (&record.temperature, asks(rule, system), unit(rule, system)),
+            (&record.oxygen, floor(rule), ("mg/L".to_owned(), 1.0)),
+            (&record.oxygen_share, floor(rule), ("% of saturation".to_owned(), 100.0)),
+        ];
+        for (held, asked, unit) in parts {
+            let Some(held) = held else { continue };
+            let place = harmless(&rule.point);
+            say(&mut out, &format!("{} at {place}: {asked}", harmless(&rule.name)), width, true);
+            say(&mut out, &format!("  {}; {PROVISIONAL}", tally(&held.all, &unit)), width, false);
+            if held.seasons.len() > 1 {
+                for (year, season) in &held.seasons {
+                    say(&mut out, &format!("  season of {year}: {}", tally(season, &unit)), width, false);
+                }
+            }
+            out.extend(calendar(held).into_iter().map(|line| (line, false)));
+            say(&mut out, &format!("  {}", source(rule)), width, false);
+        }
+    }
+    out
+}
+
+/// Adds words, wrapped.
+fn say(out: &mut Vec<(String, bool)>, text: &str, width: usize, strong: bool) {
+    out.extend(wrapped_at(text, 4, width).lines().map(|line| (line.to_owned(), strong)));
+}
+
+/// The unit of a rule's values with what a value is multiplied by.
+fn unit(rule: &Target, system: System) -> (String, f64) {
+    if rule.statistic.counts_days() {
+        return ("days".to_owned(), 1.0);
+    }
+    let unit = system.unit(Dimension::TemperatureDifference);
+    (unit.symbol().to_owned(), unit.from_si(1.0))
+}
+
+/// `3 of 61 days above, by up to 0.8 C (2026-07-14), 2 in a row; 5 days without enough readings`
+fn tally(tally: &Tally, (unit, times): &(String, f64)) -> String {
+    let mut out = Vec::new();
+    for (days, word) in [(tally.over, "above"), (tally.under, "below")] {
+        if days > 0 || (word == "above" && tally.under == 0) {
+            out.push(format!("{days} of {} days {word}", tally.judged));
+        }
+    }
+    if let Some((by, on)) = tally.worst {
+        out.push(format!("by up to {:.1} {unit} ({on})", times * by));
+        out.push(format!("{} in a row at most", tally.longest_run));
+    }
+    if tally.unknown > 0 {
+        out.push(format!("{} days without enough readings", tally.unknown));
+    }
+    out.join(", ")
+}
+
+/// A line a month: a sign for every day of it.
+pub fn calendar(held: &Held) -> Vec<String> {
+    let mut out = Vec::new();
+    if held.months.is_empty() {
+        return out;
+    }
+    out.push(format!("  {:<9}1   5    10   15   20   25   30", ""));
+    for (&(year, month), tally) in &held.months {
+        let sign = |day: u32| {
+            let date = NaiveDate::from_ymd_opt(year, month, day);
+            let mark = date.and_then(|date| held.days.iter().find(|d| d.0 == date));
+            mark.map_or(' ', |(_, mark)| sign(*mark))
+        };
+        let days: String = (1..=31).map(sign).collect();
+        let outside = tally.over + tally.under;
+        let count = if outside > 0 { format!("{outside} outside") } else { String::new() };
+        out.push(format!("  {year}-{month:02}  {days}  {count}").trim_end().to_owned());
+    }
+    out.push(format!("  {SIGNS}"));
+    out
+}
+
+fn sign(mark: Mark) -> char {
+    match mark.standing {
+        Standing::Inside => '.',
+        Standing::Above => '#',
+        Standing::Below => 'v',
+        Standing::Unknown => '?',
+    }
+}
