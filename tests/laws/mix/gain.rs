@@ -9,8 +9,8 @@ use proptest::prelude::*;
 use super::sites::{Case, Kinds, basin, cases, gate, port};
 use crate::columns::{Pool, any_water, config};
 
-fn efficiency(share: f64) -> Option<RawAeration> {
-    Some(RawAeration { efficiency: Some(share), ..RawAeration::default() })
+fn efficiency(share: f64) -> RawAeration {
+    RawAeration { efficiency: Some(share), ..RawAeration::default() }
 }
 
 /// Two gates of a well and an outlet of its own, at three levels, each with some flow.
@@ -54,7 +54,7 @@ proptest! {
         water in any_water(), a in 1.0..60.0_f64, b in 1.0..60.0_f64, c in 1.0..60.0_f64, share in 0.0..=1.0_f64,
     ) {
         let case = well_and_one(&water, [a, b, c]);
-        let Some(mix) = judged(&case, |c| c.raw.wells[0].aeration = efficiency(share)) else { return Ok(()) };
+        let Some(mix) = judged(&case, |c| c.raw.wells[0].aeration = Some(efficiency(share))) else { return Ok(()) };
         let Some(below) = below(&mix) else {
             prop_assert!(mix.release.oxygen_mg_l.is_none());
             return Ok(());
@@ -81,7 +81,7 @@ proptest! {
         water in any_water(), a in 1.0..60.0_f64,
     ) {
         let case = well_and_one(&water, [a, 0.0, 0.0]);
-        let with = |share: f64| judged(&case, |c| c.raw.wells[0].aeration = efficiency(share));
+        let with = |share: f64| judged(&case, |c| c.raw.wells[0].aeration = Some(efficiency(share)));
         let (Some(none), Some(all)) = (with(0.0), with(1.0)) else { return Ok(()) };
         let (Some(_), Some(full)) = (none.release.oxygen_mg_l, below(&all)) else { return Ok(()) };
         assert_relative_eq!(below(&none).unwrap(), none.release.oxygen_mg_l.unwrap(), max_relative = 1e-12);
