@@ -2,6 +2,7 @@
 
 #![expect(clippy::unwrap_used, reason = "helpers of tests stand outside test functions")]
 
+mod aerated;
 mod answered;
 mod casts;
 mod cautions;
