@@ -7,9 +7,6 @@ use crate::site::{Inflow, Reach, Yearly};
 
 use super::water::{Seeping, Water};
 
-/// Farthest reading that still speaks for a moment, h (choice).
-const NEAR_H: i64 = 3;
-
 /// What a stream brings.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub(super) struct Brought {
@@ -54,17 +51,12 @@ pub(super) fn seeping_into(reach: &Reach, month: u32) -> Option<Seeping> {
     (per_m_m3s > 0.0).then_some(Seeping { per_m_m3s, water })
 }
 
-/// By the hour the nearest reading; else, or where none is near, the mean of the readings of the day.
+/// By the hour the value between readings; else, or where they are too far apart, the mean of the readings of the day.
 fn told(series: &Series, at: DateTime<FixedOffset>, by_hour: bool) -> Option<f64> {
-    let readings = series.readings();
-    let next = readings.partition_point(|r| r.0 <= at);
-    if by_hour {
-        let around = [next.checked_sub(1), Some(next)].into_iter().flatten().filter_map(|i| readings.get(i));
-        let nearest = around.min_by_key(|r| (r.0 - at).abs());
-        if let Some(near) = nearest.filter(|r| (r.0 - at).abs() <= TimeDelta::hours(NEAR_H)) {
-            return Some(near.1);
-        }
+    if by_hour && let Some(value) = series.at(at) {
+        return Some(value);
     }
+    let readings = series.readings();
     let midnight =
         at.date_naive().and_time(chrono::NaiveTime::MIN).and_local_timezone(*at.offset()).single()?;
     let from = readings.partition_point(|r| r.0 < midnight);

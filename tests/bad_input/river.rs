@@ -114,6 +114,7 @@ const REFUSED_MONTHLY: &[Case] = &[
 ];
 
 pub(super) const FLAGGED: &[Case] = &[
+    ("width: 40", "width: 400", "reach-geometry", "river.reaches[0]", "36.0 m wide at the nearest"),
     ("[[20, 4], [60, 2.5]]", "[[20, 1], [60, 0.9]]", "rise-early", "river.reaches[0].rise_hours", "sooner"),
     ("  equilibrium: 22\n  exchange_w_m2_c: 30\n", "", "no-weather", "river", "trades with the air"),
     ("equilibrium: 22", "equilibrium: 22\n  weather: weather.csv", "weather-twice", "river", "weather file"),
@@ -154,7 +155,7 @@ fn scenario_what_is_odd_about_a_river_is_flagged_or_noted() {
     for (from, to, kind, path, words) in FLAGGED {
         let read = site(&changed(DAM, from, to), "site.yaml");
         let told = |p: &gatemix::problem::Problem| {
-            p.kind == *kind && p.place.path.as_deref() == Some(*path) && p.words.contains(words)
+            p.kind == *kind && p.place.path.as_deref() == Some(*path) && p.to_string().contains(words)
         };
         assert!(read.site.is_some() && read.problems.iter().any(told), "{to}: {:#?}", said(&read.problems));
     }

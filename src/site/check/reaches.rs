@@ -12,6 +12,9 @@ use super::outlets::{not_negative, positive};
 /// Distances that differ by less are one, m (choice).
 pub(super) const SLACK_M: f64 = 0.5;
 
+/// Factor by which the width that hours and depth make may differ from the one given (choice).
+const WIDTHS: f64 = 4.0;
+
 /// Water temperatures that can be, C (choice, as for casts).
 const WATER_C: std::ops::RangeInclusive<f64> = -1.0..=45.0;
 
@@ -96,6 +99,7 @@ fn reach(r: &RawReach, path: &str, from_m: Option<f64>, problems: &mut Vec<Probl
         reaeration_per_day: r.reaeration_per_day,
     };
     if tables {
+        geometry(&built, path, problems);
         rise(&built, at("rise_hours"), problems);
     }
     Some(built)
@@ -190,6 +194,27 @@ fn inflow(
         series: w.series.clone(),
         release: w.release,
     })
+}
+
+/// The hours of a table, with depth and flow, make a width; where none is near the one given, a unit is wrong.
+fn geometry(reach: &Reach, path: &str, problems: &mut Vec<Problem>) {
+    let made = |row: &(f64, f64)| row.0 / (reach.velocity_m_s(row.0) * reach.depth_m);
+    let far = |width: f64| !(1.0 / WIDTHS..=WIDTHS).contains(&(width / reach.width_m));
+    let Some(nearest) = reach.travel_h.iter().map(made).min_by(|a, b| {
+        let off = |w: &f64| (w / reach.width_m).ln().abs();
+        off(a).total_cmp(&off(b))
+    }) else {
+        return;
+    };
+    if far(nearest) {
+        let words = format!(
+            "with its depth, the hours of `travel_hours` make a river {} wide at the nearest, and `width` says {}",
+            say::m(nearest, 1),
+            say::m(reach.width_m, 1)
+        );
+        let cure = "check length, width, depth and hours, and their units";
+        problems.push(Problem::flag("reach-geometry", words, cure).at(path));
+    }
 }
 
 /// Flow, temperature and oxygen of water that joins.

@@ -4,6 +4,7 @@ mod back;
 mod down;
 mod hours;
 mod links;
+mod streams;
 
 use std::collections::BTreeMap;
 

@@ -1,0 +1,87 @@
+//! Side streams by their records: which moment of a record the river takes, and what is told where it has none.
+
+use approx::assert_abs_diff_eq;
+use chrono::{DateTime, FixedOffset, TimeDelta};
+use gatemix::river::{Conditions, Course, course};
+use gatemix::series::{Record, Series};
+use gatemix::site::Site;
+
+use super::{DAY, dam, day, part};
+
+/// A stream that joins after four hours on the way, in water that trades nothing with the air.
+fn site(figures: &str) -> Site {
+    dam(&format!(
+        "{{ equilibrium: 10, exchange_w_m2_c: 1.0e-9, reaches: [ {{ name: a, length_km: 10, width: 40, depth: 1,
+           travel_hours: [[20, 8]], inflows: [ {{ name: Creek, at_km: 5, {figures} series: creek.csv }} ] }} ],
+           points: [ {{ name: end, at_km: 10 }} ] }}"
+    ))
+}
+
+/// A record of the first so many hours of the day, each hour as warm as its number, 20 m3/s.
+fn record(hours: i64) -> Conditions {
+    let midnight: DateTime<FixedOffset> = format!("{DAY}T00:00:00+00:00").parse().unwrap();
+    let series = |of: &dyn Fn(f64) -> f64| {
+        Series::new((0..hours).map(|h| (midnight + TimeDelta::hours(h), of(h as f64))).collect())
+    };
+    let record = Record { temperature_c: series(&|h| h), flow_m3s: series(&|_| 20.0), ..Record::default() };
+    let mut conditions = Conditions::default();
+    conditions.streams.insert("Creek".into(), record);
+    conditions
+}
+
+fn blocks(site: &Site, conditions: &Conditions) -> Course {
+    course(site, conditions, day(), &[part(6.0, 20.0, 10.0, 8.0), part(18.0, 20.0, 10.0, 8.0)]).unwrap()
+}
+
+fn kinds(course: &Course) -> Vec<&'static str> {
+    course.flags.iter().map(|f| f.kind).collect()
+}
+
+#[test]
+fn scenario_a_stream_brings_what_its_record_tells_of_the_hour() {
+    let course = blocks(&site(""), &record(24));
+    let hourly = &course.points[0].hourly_c;
+    // what leaves in the third hour, at 2:30, meets the stream at 6:30, when it has 6.5 C
+    assert_abs_diff_eq!(hourly[2], 0.5 * (10.0 + 6.5), epsilon = 1e-9);
+    assert_abs_diff_eq!(hourly[18], 0.5 * (10.0 + 22.5), epsilon = 1e-9);
+    // what passes after the record's end meets its last reading, and that is told
+    assert_abs_diff_eq!(hourly[23], 0.5 * (10.0 + 23.0), epsilon = 1e-9);
+    assert!(kinds(&course).contains(&"stream-held"));
+    assert_abs_diff_eq!(course.points[0].figures.flow_m3s, 40.0, epsilon = 1e-12);
+}
+
+#[test]
+fn scenario_by_the_day_a_stream_brings_the_mean_of_its_day() {
+    let steady = [part(24.0, 20.0, 10.0, 8.0)];
+    let course = course(&site(""), &record(24), day(), &steady).unwrap();
+    assert_abs_diff_eq!(course.points[0].figures.mean_c, 0.5 * (10.0 + 11.5), epsilon = 1e-9);
+    assert!(!kinds(&course).contains(&"stream-held"));
+}
+
+#[test]
+fn scenario_figures_serve_where_a_record_has_nothing_and_no_stream_is_made_up() {
+    // after its record a stream goes by its figures
+    let course = blocks(&site("flow: 20, temperature: 4,"), &record(24));
+    assert_abs_diff_eq!(course.points[0].hourly_c[23], 0.5 * (10.0 + 4.0), epsilon = 1e-9);
+    assert!(!kinds(&course).contains(&"stream-held"));
+    // with neither it is left out, and told
+    let course = blocks(&site(""), &Conditions::default());
+    assert_abs_diff_eq!(course.points[0].figures.mean_c, 10.0, epsilon = 1e-6);
+    assert_abs_diff_eq!(course.points[0].figures.flow_m3s, 20.0, epsilon = 1e-12);
+    assert!(kinds(&course).contains(&"stream-unknown"));
+}
+
+#[test]
+fn scenario_ice_and_reaeration_beyond_its_range_are_told() {
+    let site = dam(
+        "{ equilibrium: 0, exchange_w_m2_c: 30, reaches: [ { name: a, length_km: 20, width: 40, depth: 12,
+        travel_hours: [[20, 60]] } ], points: [ { name: end, at_km: 20 } ] }",
+    );
+    let still = course(&site, &Conditions::default(), day(), &[part(24.0, 20.0, 5.0, 8.0)]).unwrap();
+    assert!(kinds(&still).contains(&"reaeration-range") && !kinds(&still).contains(&"ice"));
+    let winter = dam("{ monthly: { air: -20, dew_point: -24, wind: 3, radiation_w_m2: 20 }, reaches: [ { name: a,
+        length_km: 20, width: 40, depth: 0.7, travel_hours: [[20, 40]] } ], points: [ { name: end, at_km: 20 } ] }");
+    let frozen = course(&winter, &Conditions::default(), day(), &[part(24.0, 20.0, 2.0, 8.0)]).unwrap();
+    assert!(kinds(&frozen).contains(&"ice"));
+    assert_abs_diff_eq!(frozen.points[0].figures.mean_c, 0.0, epsilon = 1e-12);
+}
