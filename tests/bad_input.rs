@@ -2,6 +2,8 @@
 
 #![expect(clippy::unwrap_used, reason = "helpers of tests stand outside test functions")]
 
+#[path = "bad_input/aeration.rs"]
+mod aeration;
 #[path = "bad_input/atomic.rs"]
 mod atomic;
 #[path = "bad_input/cursor.rs"]
@@ -26,6 +28,8 @@ mod table;
 mod targets;
 #[path = "bad_input/text.rs"]
 mod text;
+#[path = "bad_input/weather.rs"]
+mod weather;
 #[path = "bad_input/yaml.rs"]
 mod yaml;
 

@@ -20,6 +20,8 @@ mod mix;
 mod rank;
 #[path = "laws/shape.rs"]
 mod shape;
+#[path = "laws/weather.rs"]
+mod weather;
 #[path = "laws/wells/mod.rs"]
 mod wells;
 #[path = "laws/withdrawal.rs"]

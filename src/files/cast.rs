@@ -106,7 +106,8 @@ impl Column {
 }
 
 /// Values that loggers write for "no reading".
-const SENTINELS: [f64; 9] = [-99.0, -99.9, -99.99, -999.0, -999.9, -999.99, -9999.0, -9999.9, -99999.0];
+pub(super) const SENTINELS: [f64; 9] =
+    [-99.0, -99.9, -99.99, -999.0, -999.9, -999.99, -9999.0, -9999.9, -99999.0];
 
 /// What the command line or the site file says of a cast that the cast itself may lack.
 #[derive(Debug, Clone, Default, PartialEq)]

@@ -13,7 +13,8 @@ use crate::profile::{Column, OxygenSample, Profile, Sample, greatest_buoyancy, m
 use crate::site::{BandInputs, Site};
 use crate::withdrawal::CrestForm;
 
-use super::blend::{Blend, draw_levels, overlapping, release, release_joined};
+use super::blend::{Blend, Drawn, draw_levels, overlapping, release, release_joined};
+use super::gain;
 use super::levels::{Setting, levels};
 
 /// Least and greatest loss where one is assumed (choice, methods section 4).
@@ -23,6 +24,9 @@ pub const GREATEST_LOSS: f64 = 3.0;
 /// Steps of this, their whole part dropped, spread evenly over 0 to 1 (derived; the golden section). Drawn so, the
 /// losses leave every other draw as it was.
 const GOLDEN: f64 = 0.618_033_988_749_894_9;
+/// The same for gains of oxygen (derived; the plastic number to the power of -2), so that they and the losses fill
+/// their square evenly.
+const PLASTIC: f64 = 0.569_840_290_998_053_3;
 
 /// One member: one draw of each source of doubt, the same for every mix.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -43,6 +47,8 @@ pub struct Member {
     pub joined: f64,
     /// Place of an assumed loss between its least and greatest, 0 to 1, even in its logarithm.
     pub loss: f64,
+    /// Place within the range of each gain of oxygen, 0 to 1.
+    pub gain: f64,
     /// Relation the crests use.
     pub crest: CrestForm,
     /// What the method misses, C.
@@ -84,6 +90,7 @@ pub fn members(inputs: &BandInputs) -> Vec<Member> {
                 leak,
                 joined,
                 loss: (GOLDEN * i as f64).fract(),
+                gain: (PLASTIC * i as f64).fract(),
                 crest,
                 release_c,
                 release_mg_l,
@@ -99,10 +106,10 @@ pub struct Perturbed {
     widening: f64,
 }
 
-/// Release of every member: temperature (C) and oxygen (mg/L).
+/// Release of every member: temperature (C) and oxygen below the dam (mg/L).
 #[derive(Debug, Clone, PartialEq)]
 pub struct Spread {
-    /// Temperature and oxygen of each member, in the order of the members.
+    /// Temperature and oxygen below the dam of each member, in the order of the members.
     pub cases: Vec<(f64, Option<f64>)>,
 }
 
@@ -159,21 +166,29 @@ impl Perturbed {
                     level.sink.flow_m3s *= m.flow;
                 }
                 let drawn = draw_levels(column, &levels, m.zone_factor);
-                let apart = release(&drawn)?;
+                let aired = |blend: Blend, drawn: &[Drawn]| blend.aerated(site, drawn, m.gain);
+                let apart = aired(release(&drawn)?, &drawn);
                 let overlaps = overlapping(&drawn);
                 let joined = if overlaps.is_empty() {
                     apart
                 } else {
-                    release_joined(column, &drawn, &overlaps, m.zone_factor).unwrap_or(apart)
+                    let one = release_joined(column, &drawn, &overlaps, m.zone_factor);
+                    let drawn_as_one = || gain::joined(column, &drawn, &overlaps, m.zone_factor);
+                    match one {
+                        // the water of each conduit is needed only where some conduit changes it
+                        Some(one) if site.aerates() => drawn_as_one().map_or(one, |drawn| aired(one, &drawn)),
+                        Some(one) => one,
+                        None => apart,
+                    }
                 };
                 let between = |a: f64, b: f64| a + m.joined * (b - a);
                 let temperature = widen(
                     between(apart.temperature_c, joined.temperature_c) + m.release_c,
                     centre.temperature_c,
                 );
-                let oxygen = apart.oxygen_mg_l.zip(joined.oxygen_mg_l).map(|(a, b)| {
+                let oxygen = apart.oxygen_below_mg_l.zip(joined.oxygen_below_mg_l).map(|(a, b)| {
                     let value = between(a, b);
-                    widen(value + m.release_mg_l, centre.oxygen_mg_l.unwrap_or(value)).max(0.0)
+                    widen(value + m.release_mg_l, centre.oxygen_below_mg_l.unwrap_or(value)).max(0.0)
                 });
                 Some((temperature, oxygen))
             })
@@ -228,7 +243,7 @@ impl Spread {
         band(self.cases.iter().map(|c| c.0).collect())
     }
 
-    /// 10-90 % band of the oxygen, mg/L; `None` where any member's is missing.
+    /// 10-90 % band of the oxygen below the dam, mg/L; `None` where any member's is missing.
     pub fn band_oxygen_mg_l(&self) -> Option<(f64, f64)> {
         band(self.cases.iter().map(|c| c.1).collect::<Option<_>>()?)
     }

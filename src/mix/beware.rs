@@ -11,6 +11,7 @@ use crate::problem::Problem;
 use crate::profile::{Column, buoyancy_s2};
 use crate::site::Site;
 use crate::units::say;
+use crate::water::Aeration;
 use crate::withdrawal::{End, Side};
 
 use super::band::Spread;
@@ -143,6 +144,46 @@ pub(super) fn oxygen(
             ),
             "read the release oxygen as an upper bound",
         ));
+    }
+}
+
+/// Conduits through which water of this setting passes and that add to its oxygen, by name; the second list holds those
+/// that let air or oxygen in.
+fn gaining<'a>(site: &'a Site, drawn: &[Drawn]) -> [Vec<&'a str>; 2] {
+    let mut names = [Vec::new(), Vec::new()];
+    for &outlet in drawn.iter().filter(|d| d.draw.is_some()).flat_map(|d| &d.level.outlets) {
+        let Some(aeration) = site.aeration(outlet) else { continue };
+        let Some(outlet) = site.outlets.get(outlet) else { continue };
+        let well = outlet.well.and_then(|well| site.wells.get(well));
+        let name = well.map_or(outlet.name.as_str(), |well| well.name.as_str());
+        let [all, let_in] = &mut names;
+        all.push(name);
+        if let Aeration::Gain(_) = aeration.by {
+            let_in.push(name);
+        }
+    }
+    for list in &mut names {
+        list.sort_unstable();
+        list.dedup();
+    }
+    names
+}
+
+/// Where the oxygen of the answer is told, once a conduit adds to it.
+pub(super) fn gain(site: &Site, drawn: &[Drawn], release: &Blend, warnings: &mut Vec<Problem>) {
+    let [all, let_in] = gaining(site, drawn);
+    if let (false, Some(pool)) = (all.is_empty(), release.oxygen_mg_l) {
+        let words = format!(
+            "oxygen is told and held against targets below the dam, after {}; {pool:.1} mg/L leave the pool",
+            all.join(", ")
+        );
+        warnings.push(Problem::note("oxygen-gain", words));
+    }
+    if !let_in.is_empty() {
+        let words =
+            format!("{} lets air or oxygen in; total dissolved gas is not predicted", let_in.join(", "));
+        let cure = "measure it below the dam (110 % is the usual criterion)";
+        warnings.push(Problem::flag("dissolved-gas", words, cure));
     }
 }
 

@@ -26,8 +26,10 @@ pub struct Blend {
     pub flow_m3s: f64,
     /// Temperature, C.
     pub temperature_c: f64,
-    /// Oxygen, mg/L; `None` when any level's is missing.
+    /// Oxygen leaving the pool, mg/L; `None` when any level's is missing.
     pub oxygen_mg_l: Option<f64>,
+    /// Oxygen below the dam, mg/L: after what the conduits add; without a gain at the site that leaving the pool.
+    pub oxygen_below_mg_l: Option<f64>,
     /// Dissolved solids, g/kg.
     pub salt_g_per_kg: f64,
     /// Suspended solids, mg/L.
@@ -63,17 +65,19 @@ pub fn blend(streams: &[(f64, Draw)]) -> Option<Blend> {
     }
     let mean = |read: &dyn Fn(&Draw) -> f64| streams.iter().map(|(q, d)| q * read(d)).sum::<f64>() / flow_m3s;
     let oxygen_known = streams.iter().all(|(q, d)| *q <= 0.0 || d.oxygen_mg_l.is_some());
+    let oxygen_mg_l = oxygen_known.then(|| mean(&|d| d.oxygen_mg_l.unwrap_or(0.0)));
     Some(Blend {
         flow_m3s,
         temperature_c: mean(&|d| d.temperature_c),
-        oxygen_mg_l: oxygen_known.then(|| mean(&|d| d.oxygen_mg_l.unwrap_or(0.0))),
+        oxygen_mg_l,
+        oxygen_below_mg_l: oxygen_mg_l,
         salt_g_per_kg: mean(&|d| d.salt_g_per_kg),
         suspended_mg_l: mean(&|d| d.suspended_mg_l),
         oxygen_low_share: mean(&|d| d.oxygen_low_share),
     })
 }
 
-/// The release of drawn levels.
+/// The release of drawn levels, its oxygen below the dam as leaving the pool ([`Blend::aerated`] adds the gain).
 pub fn release(drawn: &[Drawn]) -> Option<Blend> {
     let streams: Vec<(f64, Draw)> =
         drawn.iter().filter_map(|d| Some((d.level.sink.flow_m3s, d.draw?))).collect();

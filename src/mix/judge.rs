@@ -27,7 +27,7 @@ const CREST_SHARE: f64 = 0.05;
 pub struct Mix {
     /// Levels from the lowest up.
     pub levels: Vec<Drawn>,
-    /// The release leaving the pool.
+    /// The release.
     pub release: Blend,
     /// The perturbed cases.
     pub spread: Spread,
@@ -123,7 +123,7 @@ pub fn judge(
     let groups = groups(site);
     let drawn =
         draw_levels(column, &levels(site, &groups, setting, profile.pool_m, 0.5, CrestForm::Overflow), 1.0);
-    let release = release(&drawn)?;
+    let release = release(&drawn)?.aerated(site, &drawn, 0.5);
     let spread = perturbed.spread(site, &groups, setting, &release);
     let Held { targets, conflicts, points, flags } = held(site, &[(1.0, &release, &spread)], &day);
     let limits = limits(site, column, setting, profile.pool_m, day.date, &drawn, &release);
@@ -132,6 +132,7 @@ pub fn judge(
     beware::zones(site, column, &drawn, &mut warnings);
     beware::overlaps(column, &drawn, &release, &mut warnings);
     beware::oxygen(site, &drawn, &release, &spread, &mut warnings);
+    beware::gain(site, &drawn, &release, &mut warnings);
     beware::half_dry(site, setting, profile.pool_m, &mut warnings);
     beware::leaks(site, setting, &drawn, &mut warnings);
     beware::wells(site, &groups, setting, profile.pool_m, &mut warnings);

@@ -64,6 +64,8 @@ impl Setting {
 pub struct Level {
     /// Outlets that are open or leak, by elevation and name.
     pub outlets: Vec<usize>,
+    /// Flow of each of them, m3/s.
+    pub flows_m3s: Vec<f64>,
     /// Where it draws.
     pub sink: Sink,
     /// Tallest opening of the level, m.
@@ -134,10 +136,11 @@ pub fn levels(
             let members: Vec<(usize, f64)> =
                 group.iter().filter_map(|&i| Some((i, flows[i].as_ref()?.0))).collect();
             let seat = seat(site, &members, leak_place, form)?;
-            let flow_m3s = members.iter().filter_map(|&(i, _)| Some(flows[i]?.1)).sum();
+            let flows_m3s: Vec<f64> = members.iter().filter_map(|&(i, _)| Some(flows[i]?.1)).collect();
+            let flow_m3s = flows_m3s.iter().sum();
             let sink = Sink { centre_m: seat.centre_m, flow_m3s, opening: seat.opening };
             let outlets = members.into_iter().map(|m| m.0).collect();
-            Some(Level { outlets, sink, height_m: seat.height_m })
+            Some(Level { outlets, flows_m3s, sink, height_m: seat.height_m })
         })
         .collect()
 }

@@ -5,7 +5,6 @@
 use crate::river::{self, AtPoint, Course};
 use crate::site::Site;
 use crate::target::{Air, Figure, OxygenFigure, Today};
-use crate::water;
 
 use super::blend::Blend;
 use super::day::Day;
@@ -64,15 +63,9 @@ impl Water {
     }
 }
 
-/// Oxygen at saturation below the dam, mg/L, of water of a temperature (C): at the pressure of the foot of the dam.
-pub fn saturation_below_mg_l(site: &Site, temperature_c: f64, salt_g_per_kg: f64) -> f64 {
-    let pressure_atm = site.surface_pressure_atm(site.pool.bed_m);
-    water::saturation_mg_l(temperature_c, salt_g_per_kg, pressure_atm)
-}
-
-/// The oxygen of a release that rules are held against, mg/L.
+/// The oxygen of a release that rules are held against, mg/L: below the dam.
 pub(super) fn oxygen(blend: &Blend) -> Option<f64> {
-    blend.oxygen_mg_l
+    blend.oxygen_below_mg_l
 }
 
 /// Water at the dam of temperatures (C) and oxygens (mg/L) that each hold for a share of the day.
@@ -94,7 +87,7 @@ pub(super) fn at_dam(site: &Site, parts: &[(f64, f64, Option<f64>)], salt_g_per_
             parts.iter().map(|p| Some(p.0 * p.2?)).sum(),
             oxygens.and_then(|o| o.into_iter().reduce(f64::min)),
         ],
-        saturation_mg_l: Some(saturation_below_mg_l(site, mean_c, salt_g_per_kg)),
+        saturation_mg_l: Some(site.saturation_below_mg_l(mean_c, salt_g_per_kg)),
     }
 }
 

@@ -28,7 +28,7 @@ pub struct TargetStanding {
     pub left_c: [Option<f64>; 2],
     /// Standing of the temperature and distance outside, C or C days.
     pub temperature: (Standing, Option<f64>),
-    /// Oxygen, mg/L.
+    /// Oxygen below the dam, mg/L.
     pub oxygen_mg_l: Option<f64>,
     /// Oxygen over saturation.
     pub oxygen_share: Option<f64>,

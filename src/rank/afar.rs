@@ -7,7 +7,7 @@
 //!
 //! Methods: `docs/methods.md`, section 10.
 
-use crate::mix::{Conflict, Links, RuleToday, conflicts, saturation_below_mg_l};
+use crate::mix::{Conflict, Links, RuleToday, conflicts};
 use crate::profile::Column;
 use crate::site::Site;
 use crate::target::{Air, Figure, OxygenFigure, Today};
@@ -40,7 +40,7 @@ impl Seen {
         let (span, salt) = water(column);
         let mean_m3s: f64 = question.blocks.iter().map(|b| b.0 * b.1).sum();
         let links = Links::new(question.site, question.day, &[(24.0, mean_m3s)], span);
-        let saturation = |t: f64| saturation_below_mg_l(question.site, t, salt);
+        let saturation = |t: f64| question.site.saturation_below_mg_l(t, salt);
         let middle = 0.5 * (span.0 + span.1);
         Self { links, saturation: through([span.0, middle, span.1], saturation) }
     }

@@ -2,7 +2,10 @@
 //!
 //! Methods: `docs/methods.md`, section 10.
 
+use crate::site::Site;
+
 use super::curve::Curves;
+use super::gain::Conduit;
 
 /// Most blocks of a day.
 pub(super) const MOST_BLOCKS: usize = 4;
@@ -67,6 +70,8 @@ pub(super) struct Part {
     pub(super) alone: Vec<f64>,
     /// Oxygen is unknown when nothing else draws there.
     pub(super) alone_unknown: bool,
+    /// The conduit of its unit, where that adds oxygen; what it adds alone is in the choice's lanes.
+    pub(super) conduit: Option<Conduit>,
 }
 
 /// One choice of a part of the dam at one share of the release.
@@ -123,6 +128,7 @@ impl Choices {
 
 /// What happens where several choices draw through one level.
 pub(super) struct Levels<'a> {
+    pub(super) site: &'a Site,
     pub(super) slots: &'a [Slot],
     pub(super) curves: &'a Curves,
     pub(super) lanes: Lanes,
@@ -137,6 +143,9 @@ impl Levels<'_> {
     #[inline]
     pub(super) fn join(&self, parts: &[&Part], mut shared: u64, lanes: &mut [f64]) -> bool {
         let mut unknown = false;
+        if shared != 0 && parts.iter().any(|p| p.conduit.is_some()) {
+            self.gain_together(parts, shared, lanes);
+        }
         for part in parts {
             unknown |= part.alone_unknown && shared & (1 << part.slot) == 0;
         }

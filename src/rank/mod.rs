@@ -7,6 +7,7 @@ mod arrange;
 mod choices;
 mod curve;
 mod found;
+mod gain;
 mod goal;
 mod offers;
 mod ranking;
@@ -112,7 +113,7 @@ pub fn rank(question: &Question, progress: Progress) -> Result<Ranking, Stopped>
         solids: site.limits.solids_max_mg_l.is_some(),
         shares: site.limits.shares.len(),
     };
-    let levels = Levels { slots: &slots, curves: &curves, lanes, weights: &weights };
+    let levels = Levels { site, slots: &slots, curves: &curves, lanes, weights: &weights };
     let mut level_of = vec![0; site.outlets.len()];
     for (level, group) in groups.iter().enumerate() {
         for &outlet in group {

@@ -12,6 +12,7 @@ use crate::withdrawal::{CrestForm, Sink, zone};
 use super::Question;
 use super::choices::{Choice, Levels, MOST_BLOCKS, Part};
 use super::curve::Curves;
+use super::gain::Conduit;
 use super::goal::Efforts;
 use super::seats::{Level, Member};
 use super::units::{State, Unit, openings};
@@ -198,6 +199,7 @@ impl Kitchen<'_> {
             parts: Vec::new(),
             slots: 0,
         };
+        let mut conduit = Conduit::of(self.site(), &unit.outlets);
         let mut touched: Vec<usize> = flows.iter().map(|f| self.level_of[f.0]).collect();
         touched.sort_unstable();
         touched.dedup();
@@ -215,6 +217,9 @@ impl Kitchen<'_> {
                     *sum += q;
                 }
             }
+            if let Some(conduit) = &mut conduit {
+                conduit.add(self.levels, seat.curves[code], &by_block);
+            }
             match seat.slot {
                 None => {
                     choice.unknown |= self.levels.add(seat.curves[code], &by_block, &mut choice.lanes);
@@ -228,9 +233,24 @@ impl Kitchen<'_> {
                     }
                     choice.slots |= 1 << slot;
                     let set = set.is_some();
-                    choice.parts.push(Part { slot, code, set, flows_m3s: by_block, alone, alone_unknown });
+                    choice.parts.push(Part {
+                        slot,
+                        code,
+                        set,
+                        flows_m3s: by_block,
+                        alone,
+                        alone_unknown,
+                        conduit: None,
+                    });
                 }
             }
+        }
+        if let Some(conduit) = conduit {
+            let added = conduit.added(self.site());
+            for (block, gain) in added.into_iter().enumerate().take(lanes.blocks) {
+                choice.lanes[3 * block + 2] += gain;
+            }
+            choice.parts.iter_mut().for_each(|part| part.conduit = Some(conduit));
         }
         for (rule, share) in self.site().limits.shares.iter().enumerate() {
             for flow in flows.iter().filter(|f| f.1 > 0.0 && share.outlets.contains(&f.0)) {

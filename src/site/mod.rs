@@ -3,6 +3,7 @@
 //! [`Raw`] holds what a file said, in SI; [`Site`] can only be made from it by [`Site::check`], which
 //! reports every problem at once.
 
+mod aeration;
 mod check;
 mod limits;
 mod outlet;
@@ -18,14 +19,15 @@ use crate::series::Coverage;
 use crate::target::Target;
 use crate::units::{Datum, Folder};
 
+pub use aeration::Aeration;
 pub use limits::{
     Avoid, Avoided, Bins, Block, Crew, GenerationLost, Layer, Limits, Outage, Reserved, ShareRule, Undrawn,
 };
 pub use outlet::{Kind, Leakage, OpenPart, Opens, Outlet, Position, SAME_OPENING, Shape};
 pub use pool::{Pool, RawRow, WidthSource};
 pub use raw::{
-    Raw, RawAvoid, RawLimits, RawNow, RawOutage, RawOutlet, RawPool, RawReserved, RawShare, RawTarget,
-    RawUndrawn, RawWell,
+    Raw, RawAeration, RawAvoid, RawLimits, RawNow, RawOutage, RawOutlet, RawPool, RawReserved, RawShare,
+    RawTarget, RawUndrawn, RawWell,
 };
 pub use raw_river::{RawAfterbay, RawInflow, RawMonthly, RawPoint, RawReach, RawRiver, RawSeepage};
 pub use river::{Afterbay, Decay, Inflow, Point, Reach, River, Seepage, Surface, Yearly};
@@ -57,6 +59,8 @@ pub struct Well {
     pub max_flow_m3s: Option<f64>,
     /// Area of the shaft in plan, m2.
     pub plan_area_m2: Option<f64>,
+    /// What its conduit does to oxygen.
+    pub aeration: Option<Aeration>,
 }
 
 /// Limits of the total release.
@@ -268,6 +272,27 @@ impl Site {
     pub fn targets_on(&self, date: NaiveDate) -> impl Iterator<Item = (usize, &Target)> {
         let year_type = self.year_type.as_deref();
         self.targets.iter().enumerate().filter(move |(_, rule)| rule.valid_on(date, year_type))
+    }
+
+    /// What happens to the oxygen of water that leaves through an outlet: on a well, in its conduit.
+    pub fn aeration(&self, outlet: usize) -> Option<&Aeration> {
+        let outlet = self.outlets.get(outlet)?;
+        match outlet.well {
+            Some(well) => self.wells.get(well)?.aeration.as_ref(),
+            None => outlet.aeration.as_ref(),
+        }
+    }
+
+    /// Whether the site tells of any conduit what it does to oxygen.
+    pub fn aerates(&self) -> bool {
+        (0..self.outlets.len()).any(|outlet| self.aeration(outlet).is_some())
+    }
+
+    /// Oxygen at saturation below the dam, mg/L, of water that leaves it: the river begins at the elevation of the
+    /// bed (choice).
+    pub fn saturation_below_mg_l(&self, temperature_c: f64, salt_g_per_kg: f64) -> f64 {
+        let pressure = self.surface_pressure_atm(self.pool.bed_m);
+        crate::water::saturation_mg_l(temperature_c, salt_g_per_kg, pressure)
     }
 
     /// Air pressure at the water surface, atm; at sea level where the altitude is not known.

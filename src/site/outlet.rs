@@ -2,6 +2,7 @@
 
 use std::f64::consts::PI;
 
+use super::Aeration;
 use super::limits::{Avoid, Crew, GenerationLost};
 
 /// Openings nearer than this are one position.
@@ -117,6 +118,8 @@ pub struct Outlet {
     pub flow_max_m3s: Option<f64>,
     /// Leak when shut.
     pub leakage: Option<Leakage>,
+    /// What a direct outlet does to oxygen.
+    pub aeration: Option<Aeration>,
     /// Pool elevations at which it may be used, m.
     pub pool_window_m: Option<(f64, f64)>,
     /// Openings and flows to avoid.

@@ -37,6 +37,8 @@ pub struct RawWell {
     pub max_flow_m3s: Option<f64>,
     /// Area of the shaft in plan, m2.
     pub plan_area_m2: Option<f64>,
+    /// What its conduit does to oxygen.
+    pub aeration: Option<RawAeration>,
 }
 
 /// Outlet as read.
@@ -78,6 +80,8 @@ pub struct RawOutlet {
     pub flow_max_m3s: Option<f64>,
     /// Leak when shut.
     pub leakage: Option<Leakage>,
+    /// What its conduit does to oxygen.
+    pub aeration: Option<RawAeration>,
     /// Pool elevations at which it may be used, m.
     pub pool_window_m: Option<(f64, f64)>,
     /// Openings and flows to avoid.
@@ -92,6 +96,23 @@ pub struct RawOutlet {
     pub generation_lost: Option<GenerationLost>,
     /// Its position is not confirmed.
     pub uncertain: bool,
+}
+
+/// What a conduit does to oxygen as read; one of fall, efficiency and gain is to be given.
+#[derive(Debug, Clone, Copy, Default, PartialEq)]
+pub struct RawAeration {
+    /// Height of a fall, m.
+    pub fall_m: Option<f64>,
+    /// Factor of water quality.
+    pub quality: Option<f64>,
+    /// Factor of the form of the fall.
+    pub form: Option<f64>,
+    /// Efficiency, 0 to 1.
+    pub efficiency: Option<f64>,
+    /// Gain, mg/L.
+    pub gain_mg_l: Option<f64>,
+    /// Least and greatest efficiency or gain.
+    pub range: Option<(f64, f64)>,
 }
 
 /// A stretch to avoid as read; one of the two is to be given.

@@ -76,7 +76,7 @@ pub(super) fn day(
         ],
         by_flow_c: blocks.iter().map(|b| flow(b) * b.mix.release.temperature_c).sum::<f64>()
             / blocks.iter().map(flow).sum::<f64>(),
-        time_mean_mg_l: blocks.iter().map(|b| Some(b.share * b.mix.release.oxygen_mg_l?)).sum(),
+        time_mean_mg_l: blocks.iter().map(|b| Some(b.share * b.mix.release.oxygen_below_mg_l?)).sum(),
         held,
         blocks,
     };

@@ -56,8 +56,9 @@ pub fn solve(context: &Context, asked: &Given, wanted_c: f64) -> Result<Solved, 
         let setting = given(context, &asked).ok()?.setting;
         let (site, profile) = (context.site(), &context.profile);
         let levels = levels(site, &groups, &setting, profile.pool_m, 0.5, CrestForm::Overflow);
-        let release = release(&draw_levels(&profile.column, &levels, 1.0))?;
-        Some((release.temperature_c, release.oxygen_mg_l))
+        let drawn = draw_levels(&profile.column, &levels, 1.0);
+        let release = release(&drawn)?.aerated(site, &drawn, 0.5);
+        Some((release.temperature_c, release.oxygen_below_mg_l))
     };
     let (roots, bracket_c) = roots(&water, both, wanted_c);
     let roots = roots.into_iter().map(|root| (root.clone(), with(asked, between, root.flows_m3s))).collect();

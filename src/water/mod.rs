@@ -2,6 +2,7 @@
 //!
 //! Plain functions of temperature in C, salt in g/kg and solids in mg/L, at the pressure of the surface.
 
+mod aeration;
 mod density;
 mod oxygen;
 mod reaeration;
@@ -11,6 +12,7 @@ mod thermal;
 #[cfg(test)]
 mod tests;
 
+pub use aeration::{Aeration, GREATEST_FALL_M, deficit_ratio_of_fall, efficiency_of_ratio};
 pub use density::{
     SEDIMENT_DENSITY_KG_M3, density_kg_m3, pure_water_kg_m3, salt_slope, suspended_gain_kg_m3,
     temperature_of_greatest_density_c,

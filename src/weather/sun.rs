@@ -75,17 +75,6 @@ pub fn daylight_h(sunset_rad: f64) -> f64 {
     24.0 / PI * sunset_rad
 }
 
-/// Height of the sun above the horizon, by its sine; negative at night.
-///
-/// # Units
-/// Radians; the hour angle is 0 when the sun is highest.
-///
-/// # References
-/// Spherical triangle of pole, zenith and sun (derived).
-pub fn sine_of_height(latitude_rad: f64, declination_rad: f64, hour_rad: f64) -> f64 {
-    latitude_rad.sin() * declination_rad.sin() + latitude_rad.cos() * declination_rad.cos() * hour_rad.cos()
-}
-
 /// Sun above the air, on level ground, as the mean of a day.
 ///
 /// # Units

@@ -6,6 +6,8 @@ use std::fs;
 use gatemix::files::cast::Column;
 use gatemix::files::folder::{Folder, check};
 use gatemix::files::site::site;
+use gatemix::files::text::{Format, read_from};
+use gatemix::files::weather;
 use gatemix::files::yaml::{Document, Node};
 use gatemix::problem::any_refused;
 use serde_yaml::Value;
@@ -75,7 +77,8 @@ fn scenario_every_example_of_the_files_reference_is_accepted() {
             ["yaml", "site"] => folders.push((text, Vec::new())),
             // a cast belongs to the site above it
             ["csv", "cast", name] => folders.last_mut().unwrap().1.push((name.into(), text)),
-            ["text"] => {}
+            // weather has a test of its own below
+            ["csv", "weather"] | ["text"] => {}
             _ => panic!("unknown kind of example: {words}"),
         }
     }
@@ -191,6 +194,26 @@ fn law_the_files_reference_names_every_column_and_shows_it() {
     for comment in ["# taken: ", "# pool: ", "# datum: "] {
         assert!(rows("line").iter().any(|cells| cells[0].starts_with(comment)));
         assert!(headers.contains(comment), "{comment}");
+    }
+}
+
+#[test]
+fn law_the_files_reference_names_every_column_of_weather_and_its_examples_are_read() {
+    let told: Vec<&str> = rows("weather column").iter().map(|cells| cells[0]).collect();
+    let columns: Vec<&str> = weather::Column::ALL.iter().map(|column| column.name()).collect();
+    assert_eq!(told, columns);
+    let site = site(&site_examples()[0], "site.yaml").site.unwrap();
+    let examples: Vec<String> =
+        fences().into_iter().filter(|(words, _)| *words == "csv weather").map(|(_, text)| text).collect();
+    assert!(examples.len() >= 2);
+    for text in &examples {
+        let source = read_from("weather.csv", text.as_bytes(), Format::Csv).unwrap();
+        let (read, problems) = weather::weather(&source, &site);
+        assert!(read.is_some(), "{:#?}", said(&problems));
+    }
+    for cells in rows("weather line") {
+        let (key, _) = cells[0].split_once(':').unwrap();
+        assert!(examples.concat().contains(key), "{key} stands in no example");
     }
 }
 

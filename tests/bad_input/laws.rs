@@ -9,7 +9,7 @@ use proptest::collection::vec;
 use proptest::prelude::*;
 use proptest::test_runner::FileFailurePersistence;
 
-fn config() -> ProptestConfig {
+pub(super) fn config() -> ProptestConfig {
     let kept = FileFailurePersistence::Direct("tests/bad_input/found.txt");
     ProptestConfig { cases: 400, failure_persistence: Some(Box::new(kept)), ..ProptestConfig::default() }
 }

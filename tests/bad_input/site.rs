@@ -7,7 +7,7 @@ use std::path::Path;
 use gatemix::files::site::site;
 use gatemix::problem::Weight;
 
-use super::{limits, targets};
+use super::{aeration, limits, targets};
 
 pub(super) const SOUND: &str = r#"name: Test Dam (invented)
 units: { length: m, area: m2, volume: m3, flow: m3/s, temperature: C }
@@ -23,12 +23,12 @@ pool:
     - [40, 5.0e6, 9.1e7, 200]
     - [62, 9.0e6, 2.45e8, 300]
 wells:
-  - { name: North, conduit: 2, max_open: 2, max_head_loss: 1.5, min_flow: 3, max_flow: 90, plan_area: 60 }
+  - { name: North, conduit: 2, max_open: 2, max_head_loss: 1.5, min_flow: 3, max_flow: 90, plan_area: 60, aeration: { efficiency: 40, range: [25, 55] } }
 outlets:
   - { name: N1, well: North, centre: 45, height: 3, width: 4, angle: 180, loss: 1.5, positions: [0, 50, 100], min_submergence: 4, flow: { min: 2, max: 80 }, pool_window: [50, 61], avoid: [ { open: [60, 90] } ], max_entrance_velocity: 1.3, moves_under_flow: false, crew: { hours: 3, lead_days: 7, cost: 1.5 }, uncertain: true }
   - { name: N2, well: North, centre: 30, height: 3, width: 4, loss: 1.5, leakage: { flow: 1, head: 2, range: [0.5, 2] } }
-  - { name: Cone, centre: 12, diameter: 1.8, discharge: 0.75, opens: down, avoid: [ { flow: [5, 12], reason: rough running } ], generation_lost: { flow: 10, power: 3.2 } }
-  - { name: Crest, kind: crest, gated: true, centre: 58, width: 20, rating: [[0, 0], [2, 100]] }
+  - { name: Cone, centre: 12, diameter: 1.8, discharge: 0.75, opens: down, avoid: [ { flow: [5, 12], reason: rough running } ], generation_lost: { flow: 10, power: 3.2 }, aeration: { gain: 1.5, range: [1, 2] } }
+  - { name: Crest, kind: crest, gated: true, centre: 58, width: 20, rating: [[0, 0], [2, 100]], aeration: { fall: 3, quality: 1.2, form: 0.8 } }
   - { name: Leaves, kind: crest, gated: true, centre: 50, width: 6, positions: [ { name: two leaves, crest: 45 }, { name: 3 leaves, crest: 50 } ] }
 release: { min: 15, max: 120, wanted: 40 }
 now: { N1: 50%, North: 20, Leaves: two leaves }
@@ -166,6 +166,11 @@ const FLAGGED: &[Case] = &[
     ),
 ];
 
+/// Every change that is refused.
+fn all() -> impl Iterator<Item = &'static Case> {
+    REFUSED.iter().chain(limits::REFUSED).chain(aeration::REFUSED).chain(targets::REFUSED)
+}
+
 fn changed(from: &str, to: &str) -> String {
     assert_eq!(SOUND.matches(from).count(), 1, "{from}");
     SOUND.replacen(from, to, 1)
@@ -180,7 +185,7 @@ fn scenario_the_site_that_is_changed_is_sound() {
 #[test]
 fn scenario_each_error_of_a_site_is_told_at_its_place_and_alone() {
     let mut wrong = Vec::new();
-    for (from, to, kind, path, words) in REFUSED.iter().chain(limits::REFUSED).chain(targets::REFUSED) {
+    for (from, to, kind, path, words) in all() {
         let read = site(&changed(from, to), "site.yaml");
         let refused: Vec<_> = read.problems.iter().filter(|p| p.weight == Weight::Refused).collect();
         let told = refused.iter().any(|p| {
@@ -199,7 +204,7 @@ fn scenario_each_error_of_a_site_is_told_at_its_place_and_alone() {
 
 #[test]
 fn scenario_what_is_odd_about_a_site_is_flagged_or_noted() {
-    for (from, to, kind, path, words) in FLAGGED {
+    for (from, to, kind, path, words) in FLAGGED.iter().chain(aeration::FLAGGED) {
         let problems = site(&changed(from, to), "site.yaml").problems;
         let told = |p: &gatemix::problem::Problem| {
             p.kind == *kind && p.place.path.as_deref() == Some(*path) && p.words.contains(words)
@@ -261,8 +266,7 @@ fn law_every_kind_of_problem_a_site_can_have_has_a_case() {
     for folder in ["src/site", "src/files/site"] {
         gather(&Path::new(env!("CARGO_MANIFEST_DIR")).join(folder), &mut kinds);
     }
-    let cases: BTreeSet<&str> =
-        REFUSED.iter().chain(limits::REFUSED).chain(targets::REFUSED).chain(FLAGGED).map(|c| c.2).collect();
+    let cases: BTreeSet<&str> = all().chain(FLAGGED).chain(aeration::FLAGGED).map(|c| c.2).collect();
     // shown by the two tests above
     let elsewhere =
         ["mixed-loss", "unknown-well", "no-outlet", "table-short", "volume-without-area", "table-empty"];

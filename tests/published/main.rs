@@ -3,6 +3,7 @@
 
 #![allow(clippy::unwrap_used, reason = "a test stops at its first surprise")]
 
+mod gas;
 mod layering;
 mod mix;
 mod pool;
@@ -13,6 +14,7 @@ mod targets;
 mod today;
 mod units;
 mod water;
+mod weather;
 mod wells;
 mod withdrawal;
 

@@ -3,7 +3,7 @@
 use crate::files::cursor::{Map, Value};
 use crate::files::yaml::Node;
 use crate::problem::Problem;
-use crate::site::{GenerationLost, Leakage, Opens, Position, RawAvoid, RawOutlet, RawWell};
+use crate::site::{GenerationLost, Leakage, Opens, Position, RawAeration, RawAvoid, RawOutlet, RawWell};
 use crate::units::Dimension;
 
 use super::limits::reason;
@@ -18,6 +18,7 @@ pub(super) fn well(read: &In, map: &Map) -> RawWell {
         min_flow_m3s: read.optional(map, "min_flow", Dimension::Flow),
         max_flow_m3s: read.optional(map, "max_flow", Dimension::Flow),
         plan_area_m2: read.optional(map, "plan_area", Dimension::Area),
+        aeration: aeration(read, map),
     }
 }
 
@@ -65,6 +66,7 @@ pub(super) fn outlet(read: &In, map: &Map) -> RawOutlet {
         let range_m3s = m.optional("range").and_then(|v| pair(read, &v, [Dimension::Flow, Dimension::Flow]));
         out.leakage = flow.zip(head).map(|(flow_m3s, head_m)| Leakage { flow_m3s, head_m, range_m3s });
     });
+    out.aeration = aeration(read, map);
     let span = |m: &Map, key, dimension| m.optional(key).and_then(|v| pair(read, &v, [dimension, dimension]));
     out.pool_window_m = span(map, "pool_window", Dimension::Length);
     out.avoid = each(map, "avoid", |m| RawAvoid {
@@ -82,6 +84,28 @@ pub(super) fn outlet(read: &In, map: &Map) -> RawOutlet {
         let power = m.required("power").and_then(|v| v.number());
         out.generation_lost =
             flow.zip(power).map(|(flow_m3s, power_mw)| GenerationLost { flow_m3s, power_mw });
+    });
+    out
+}
+
+/// What the conduit of a well or of a direct outlet does to oxygen.
+fn aeration(read: &In, map: &Map) -> Option<RawAeration> {
+    let mut out = None;
+    within(map, "aeration", |m| {
+        let percent = |value: f64| value / 100.0;
+        let efficiency = read.optional(m, "efficiency", Dimension::Percent).map(percent);
+        // the range is in the unit of the figure it stands about
+        let (dimension, factor) =
+            if efficiency.is_some() { (Dimension::Percent, 0.01) } else { (Dimension::Concentration, 1.0) };
+        let range = m.optional("range").and_then(|v| pair(read, &v, [dimension, dimension]));
+        out = Some(RawAeration {
+            fall_m: read.optional(m, "fall", Dimension::Length),
+            quality: number(m, "quality"),
+            form: number(m, "form"),
+            efficiency,
+            gain_mg_l: read.optional(m, "gain", Dimension::Concentration),
+            range: range.map(|(low, high)| (factor * low, factor * high)),
+        });
     });
     out
 }

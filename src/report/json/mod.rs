@@ -297,6 +297,7 @@ fn release(mix: &Mix) -> ReleaseJson {
         flow_m3s: mix.release.flow_m3s,
         temperature_c: mix.release.temperature_c,
         oxygen_mg_l: mix.release.oxygen_mg_l,
+        oxygen_below_mg_l: mix.release.oxygen_below_mg_l,
         band_c: ends(mix.spread.band_c()),
         band_oxygen_mg_l: ends(mix.spread.band_oxygen_mg_l()),
     }

@@ -90,7 +90,8 @@ fn ranked(site: &Site, shown: &Shown) -> RankedJson {
         release: WholeDayJson {
             flow_m3s: shown.flow_m3s,
             temperature_c: shown.temperature_c,
-            oxygen_mg_l: shown.oxygen_mg_l,
+            oxygen_mg_l: shown.oxygen_pool_mg_l,
+            oxygen_below_mg_l: shown.oxygen_mg_l,
             band_c: ends(shown.spread.band_c()),
             band_oxygen_mg_l: ends(shown.spread.band_oxygen_mg_l()),
             time_mean_c: shown.temperature_c,

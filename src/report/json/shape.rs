@@ -136,6 +136,7 @@ pub(super) struct ReleaseJson {
     pub(super) flow_m3s: f64,
     pub(super) temperature_c: f64,
     pub(super) oxygen_mg_l: Option<f64>,
+    pub(super) oxygen_below_mg_l: Option<f64>,
     pub(super) band_c: Option<[f64; 2]>,
     pub(super) band_oxygen_mg_l: Option<[f64; 2]>,
 }

@@ -34,7 +34,7 @@ pub(super) fn body(context: &Context, answer: &MixAnswer) -> String {
             out.push_str(&labelled("Change", &format!("{}; {crew}", moves(context, change, context.system))));
         }
     }
-    out.push_str(&labelled("", "leaving the pool; brackets hold 10-90 % of our perturbed cases"));
+    out.push_str(&labelled("", &where_told(site, &answer.mix)));
     out.push('\n');
     out.push_str(&standings(site, &answer.mix.targets, system));
     out.push_str(&levels(site, &answer.mix.levels, system));
@@ -44,6 +44,18 @@ pub(super) fn body(context: &Context, answer: &MixAnswer) -> String {
     out.push('\n');
     out.push_str(&list("This setting", &flags_of(&answer.mix.warnings), false, system));
     out
+}
+
+/// Where the figures of a release are told: leaving the pool, or below the dam where the conduits add oxygen.
+fn where_told(site: &Site, mix: &Mix) -> String {
+    let of_cases = "brackets hold 10-90 % of our perturbed cases";
+    if site.aerates() {
+        let pool = oxygen(mix.release.oxygen_mg_l);
+        return format!(
+            "oxygen below the dam, with what the conduits add; {pool} leaving the pool; {of_cases}"
+        );
+    }
+    format!("leaving the pool; {of_cases}")
 }
 
 /// Each block of the day, then the day as a gauge sees it and by flow.
@@ -58,7 +70,7 @@ fn blocks(site: &Site, day: &DayAnswer, system: System) -> String {
             of.hours,
             flow(release.flow_m3s, system),
             temperature(release.temperature_c, system),
-            oxygen(release.oxygen_mg_l)
+            oxygen(release.oxygen_below_mg_l)
         );
         out.push_str(&labelled(label, &words));
     }
@@ -123,7 +135,7 @@ fn wells(site: &Site, setting: &Setting, system: System) -> String {
 
 /// Temperature and oxygen of a release with their bands: `54.6 F (53.5 to 56.1), oxygen 7.1 mg/L (6.3 to 7.9)`.
 pub fn release_line(mix: &Mix, system: System) -> String {
-    release_words((mix.release.temperature_c, mix.release.oxygen_mg_l), &mix.spread, system)
+    release_words((mix.release.temperature_c, mix.release.oxygen_below_mg_l), &mix.spread, system)
 }
 
 /// The same of temperature (C), oxygen (mg/L) and the perturbed cases.
@@ -161,7 +173,7 @@ fn against_now(site: &Site, now: &Setting, was: &Mix, tried: &Mix, system: Syste
 /// What differs from one mix to another, of the figures as they are shown: `temperature 1.7 F colder, oxygen 0.1 mg/L
 /// lower`.
 pub fn difference(was: &Mix, tried: &Mix, system: System) -> String {
-    let water = |mix: &Mix| (mix.release.temperature_c, mix.release.oxygen_mg_l);
+    let water = |mix: &Mix| (mix.release.temperature_c, mix.release.oxygen_below_mg_l);
     apart(water(was), water(tried), system)
 }
 

@@ -1,5 +1,6 @@
 //! From raw to checked site: every problem at once, each at its path.
 
+mod aeration;
 mod limits;
 mod months;
 mod operation;
@@ -58,6 +59,7 @@ impl Site {
         outlets::mixed_losses(raw, &mut problems);
         let river = river::river(raw, &mut problems);
         river::points_of_targets(raw, &mut problems);
+        aeration::on_gates(raw, &mut problems);
         let release = limits::release(raw, &mut problems);
         limits::blocks(&raw.blocks, &mut problems);
         let limits = limits::limits(raw, pool.as_ref(), &mut problems);

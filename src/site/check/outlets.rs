@@ -4,6 +4,7 @@ use crate::problem::Problem;
 use crate::site::{Kind, Outlet, Pool, Position, Raw, RawOutlet, RawWell, Shape, Well};
 use crate::units::say;
 
+use super::aeration::aeration;
 use super::operation;
 
 /// Least head a leak can be told at, m (choice).
@@ -78,6 +79,7 @@ pub(super) fn wells(raw: &Raw, pool: Option<&Pool>, problems: &mut Vec<Problem>)
             min_flow_m3s: w.min_flow_m3s.unwrap_or(0.0),
             max_flow_m3s: positive(w.max_flow_m3s, at("max_flow"), "max_flow", problems),
             plan_area_m2: w.plan_area_m2,
+            aeration: aeration(w.aeration.as_ref(), &format!("wells[{i}]"), problems),
         })
     };
     raw.wells.iter().enumerate().map(build).collect()
@@ -181,6 +183,7 @@ pub(super) fn outlet(
     };
     positions(o, i, crest, pool, problems);
     let avoid = operation::outlet(o, i, pool, problems);
+    let aeration = aeration(o.aeration.as_ref(), &format!("outlets[{i}]"), problems);
     let kind = if crest { crest_kind(o, i, problems) } else { orifice_kind(o, i, problems) };
     // fully open is the lowest edge the crew can set
     let edges = o.positions.iter().filter_map(|p| p.crest_m);
@@ -199,6 +202,7 @@ pub(super) fn outlet(
         flow_min_m3s: o.flow_min_m3s.unwrap_or(0.0),
         flow_max_m3s: o.flow_max_m3s,
         leakage: o.leakage,
+        aeration,
         pool_window_m: o.pool_window_m,
         avoid,
         max_entrance_m_s: o.max_entrance_m_s,

@@ -37,12 +37,13 @@ impl Kitchen<'_> {
     pub(super) fn blend(&self, setting: &Setting) -> Option<Blend> {
         let (site, profile) = (self.context.site(), &self.context.profile);
         let levels = levels(site, self.groups, setting, profile.pool_m, 0.5, CrestForm::Overflow);
-        release(&draw_levels(&profile.column, &levels, 1.0))
+        let drawn = draw_levels(&profile.column, &levels, 1.0);
+        Some(release(&drawn)?.aerated(site, &drawn, 0.5))
     }
 
-    /// Its temperature (C) and oxygen (mg/L).
+    /// Its temperature (C) and oxygen below the dam (mg/L).
     pub(super) fn water(&self, setting: &Setting) -> Option<(f64, Option<f64>)> {
-        self.blend(setting).map(|b| (b.temperature_c, b.oxygen_mg_l))
+        self.blend(setting).map(|b| (b.temperature_c, b.oxygen_below_mg_l))
     }
 
     /// What a ranked mix sets, flows as their time means.
@@ -111,7 +112,8 @@ impl Kitchen<'_> {
         let temperature_c = over(&|p| Some(p.mix.release.temperature_c))?;
         let flow_m3s = over(&|p| Some(p.mix.release.flow_m3s))?;
         let by_flow_c = over(&|p| Some(p.mix.release.flow_m3s * p.mix.release.temperature_c))? / flow_m3s;
-        let oxygen_mg_l = over(&|p| p.mix.release.oxygen_mg_l);
+        let oxygen_mg_l = over(&|p| p.mix.release.oxygen_below_mg_l);
+        let oxygen_pool_mg_l = over(&|p| p.mix.release.oxygen_mg_l);
         let cold_m3_per_day = match site.cold_water_c.first() {
             Some(&threshold) => over(&|p| Some(DAY_S * self.colder_m3s(p, threshold))),
             None => None,
@@ -128,6 +130,7 @@ impl Kitchen<'_> {
             flow_m3s,
             temperature_c,
             oxygen_mg_l,
+            oxygen_pool_mg_l,
             by_flow_c,
             spread,
             targets,

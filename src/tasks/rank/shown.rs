@@ -40,8 +40,10 @@ pub struct Shown {
     pub flow_m3s: f64,
     /// Time mean of the temperature, C: what a gauge sees.
     pub temperature_c: f64,
-    /// Time mean of the oxygen, mg/L.
+    /// Time mean of the oxygen below the dam, mg/L; without a gain at the site that leaving the pool.
     pub oxygen_mg_l: Option<f64>,
+    /// Time mean of the oxygen leaving the pool, mg/L.
+    pub oxygen_pool_mg_l: Option<f64>,
     /// Temperature weighted with the flow, C: what heat balances use.
     pub by_flow_c: f64,
     /// Time means of the perturbed cases.

@@ -1,6 +1,6 @@
 //! The water where rules apply, mix by mix: at a point by its link to the day's mean flow.
 
-use gatemix::mix::{Conflict, Links, conflicts, saturation_below_mg_l};
+use gatemix::mix::{Conflict, Links, conflicts};
 use gatemix::rank::Question;
 use gatemix::target::{Figure, OxygenFigure};
 
@@ -24,7 +24,7 @@ impl Afar {
         let links = Links::new(question.site, question.day, &[(24.0, flow)], (low, high));
         let conflicts = conflicts(question.site, &question.day.rules(question.site), &links);
         let salt = column.reading(0.5 * (column.bed_m() + column.surface_m())).salt_g_per_kg;
-        let at = |t: f64| (t, saturation_below_mg_l(question.site, t, salt));
+        let at = |t: f64| (t, question.site.saturation_below_mg_l(t, salt));
         Self { links, conflicts, saturation: [at(low), at(0.5 * (low + high)), at(high)] }
     }
 

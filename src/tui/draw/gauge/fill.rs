@@ -24,7 +24,7 @@ pub struct Release<'a> {
 
 impl<'a> From<&'a Mix> for Release<'a> {
     fn from(mix: &'a Mix) -> Self {
-        let (temperature_c, oxygen_mg_l) = (mix.release.temperature_c, mix.release.oxygen_mg_l);
+        let (temperature_c, oxygen_mg_l) = (mix.release.temperature_c, mix.release.oxygen_below_mg_l);
         Self { temperature_c, oxygen_mg_l, spread: &mix.spread, targets: &mix.targets }
     }
 }

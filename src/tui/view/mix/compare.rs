@@ -120,7 +120,7 @@ fn release(answer: &MixAnswer, system: System, warm: bool) -> [String; 2] {
         let value = show(mix.release.temperature_c, Dimension::Temperature, system, 1);
         return [value, band(mix.spread.band_c(), &|c| figure(c, unit, 1))];
     }
-    match mix.release.oxygen_mg_l {
+    match mix.release.oxygen_below_mg_l {
         None => ["unknown".into(), String::new()],
         Some(oxygen) => {
             [format!("{oxygen:.1} mg/L"), band(mix.spread.band_oxygen_mg_l(), &|o| format!("{o:.1}"))]
