@@ -18,6 +18,8 @@ mod laws;
 mod limits;
 #[path = "bad_input/mutated.rs"]
 mod mutated;
+#[path = "bad_input/river.rs"]
+mod river;
 #[path = "bad_input/settings.rs"]
 mod settings;
 #[path = "bad_input/site.rs"]

@@ -9,6 +9,7 @@ use crate::site::Site;
 
 use super::Conditions;
 use super::figures::{Figures, hourly};
+use super::hours::Hours;
 use super::run::{Run, Seen};
 use super::slices::{Slice, slices};
 use super::water::Water;
@@ -88,11 +89,16 @@ pub(super) fn at_points(run: &Run, slices: &[Slice], rows: &[Vec<Seen>]) -> Vec<
     let day: f64 = slices.iter().map(|s| s.hours).sum();
     let flow = slices.iter().map(|s| s.hours * s.water.flow_m3s).sum::<f64>() / day;
     let hours = run.hours(flow);
-    let one = |(point, &[travel_h, rise_first_h, rise_h]): (usize, &[f64; 3])| {
+    let one = |(point, h): (usize, &Hours)| {
         let there = there(rows, |seen| seen.point == Some(point));
-        let figures = Figures::of(slices, &there, run.by_hour, run.pressure_atm);
-        let hourly_c = if run.by_hour { hourly(slices, &there) } else { Vec::new() };
-        AtPoint { point, figures, travel_h, rise_first_h, rise_h, hourly_c }
+        AtPoint {
+            point,
+            figures: Figures::of(slices, &there, run.by_hour, run.pressure_atm),
+            travel_h: h.water,
+            rise_first_h: h.first,
+            rise_h: h.bulk,
+            hourly_c: if run.by_hour { hourly(slices, &there) } else { Vec::new() },
+        }
     };
     hours.iter().enumerate().map(one).collect()
 }
@@ -107,6 +113,6 @@ fn along(run: &Run, slices: &[Slice], rows: &[Vec<Seen>]) -> Vec<Place> {
 }
 
 /// Each slice's water at the place that is asked for.
-pub(super) fn there(rows: &[Vec<Seen>], is_it: impl Fn(&Seen) -> bool) -> Vec<Water> {
+fn there(rows: &[Vec<Seen>], is_it: impl Fn(&Seen) -> bool) -> Vec<Water> {
     rows.iter().filter_map(|row| row.iter().find(|seen| is_it(seen))).map(|seen| seen.water).collect()
 }

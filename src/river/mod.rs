@@ -3,9 +3,11 @@
 //! Methods: `docs/methods.md`, section 6.
 
 mod afterbay;
+mod back;
 mod conditions;
 mod course;
 mod figures;
+mod hours;
 mod legs;
 mod link;
 mod run;
@@ -14,6 +16,12 @@ mod slices;
 mod stream;
 mod water;
 
+#[cfg(test)]
+mod tests;
+
+pub use back::{
+    Figure, Floor, LeastOxygen, MOST_OXYGEN_MG_L, RELEASES_C, Wanted, Window, latest, least_oxygen, window,
+};
 pub use conditions::Conditions;
 pub use course::{AtPoint, Course, Part, Place, course};
 pub use figures::Figures;

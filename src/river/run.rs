@@ -10,11 +10,12 @@ use crate::units::say;
 
 use super::Conditions;
 use super::afterbay;
+use super::hours::{Hours, hours};
 use super::legs::{Leg, Then, legs};
 use super::sky::Sky;
 use super::slices::Slice;
-use super::stream::{brought, seeping};
-use super::water::{Seeping, Stretch, Told, Water};
+use super::stream::{brought, seeping_into};
+use super::water::{Stretch, Told, Water};
 
 const DAY_H: f64 = 24.0;
 const HOUR_S: f64 = 3600.0;
@@ -133,7 +134,7 @@ impl<'a> Run<'a> {
                     reach,
                     length_m: leg.length_m,
                     sky: &self.sky,
-                    seeping: self.seeping(reach),
+                    seeping: seeping_into(reach, self.midnight.month()),
                     decay: self.river.decay,
                     pressure_atm: self.pressure_atm,
                     stride: self.stride,
@@ -187,53 +188,15 @@ impl<'a> Run<'a> {
         water.with(brought.water)
     }
 
-    fn seeping(&self, reach: &Reach) -> Option<Seeping> {
-        let water = seeping(reach.seepage.as_ref()?, self.midnight.month());
-        let per_m_m3s = water.flow_m3s / reach.length_m;
-        (per_m_m3s > 0.0).then_some(Seeping { per_m_m3s, water })
-    }
-
     fn time(&self, clock_h: f64) -> Option<DateTime<FixedOffset>> {
         let seconds = TimeDelta::try_milliseconds(round(clock_h * HOUR_S * 1000.0)?)?;
         self.midnight.checked_add_signed(seconds)
     }
 
-    /// Hours to each point by a flow at the dam: of the water, of the first of a rise, of its bulk. The water stays in
-    /// the afterbay; a rise passes it.
-    pub(super) fn hours(&self, flow_m3s: f64) -> Vec<[f64; 3]> {
-        let mut out = vec![[0.0; 3]; self.river.points.len()];
-        let mut sum = [0.0; 3];
-        if let Some(bay) = &self.river.afterbay {
-            sum[0] = afterbay::stay_h(bay, flow_m3s);
-        }
-        let mut flow = flow_m3s;
-        for leg in &self.legs {
-            let Some(reach) = self.river.reaches.get(leg.reach) else { continue };
-            let share = leg.length_m / reach.length_m;
-            let seeped = self.seeping(reach).map_or(0.0, |s| s.per_m_m3s * leg.length_m);
-            let middle = flow + 0.5 * seeped;
-            let bulk = reach.bulk_h(middle);
-            sum[0] += reach.water_h(middle).0 * share;
-            sum[1] += reach.front_h(middle).min(bulk) * share;
-            sum[2] += bulk * share;
-            flow += seeped;
-            match leg.then {
-                Then::Join(i) => {
-                    let record = reach.inflows.get(i).and_then(|s| self.conditions.streams.get(&s.name));
-                    let noon = self.time(DAY_H / 2.0);
-                    let water =
-                        reach.inflows.get(i).zip(noon).and_then(|(s, at)| brought(s, record, at, false));
-                    flow += water.map_or(0.0, |b| b.water.flow_m3s);
-                }
-                Then::Point(point) => {
-                    if let Some(hours) = out.get_mut(point) {
-                        *hours = sum;
-                    }
-                }
-                Then::Look => {}
-            }
-        }
-        out
+    /// Hours to each point by a flow at the dam: see [`hours`].
+    pub(super) fn hours(&self, flow_m3s: f64) -> Vec<Hours> {
+        let noon = self.time(DAY_H / 2.0).unwrap_or(self.midnight);
+        hours(self.river, self.conditions, noon, &legs(self.river, 0), flow_m3s)
     }
 
     /// What is to be told of the way.
@@ -309,6 +272,6 @@ impl<'a> Run<'a> {
 }
 
 #[expect(clippy::cast_possible_truncation, reason = "held within what a time can be")]
-fn round(value: f64) -> Option<i64> {
+pub(super) fn round(value: f64) -> Option<i64> {
     (value.abs() < 1e15).then_some(value.round() as i64)
 }

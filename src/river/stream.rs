@@ -3,9 +3,9 @@
 use chrono::{DateTime, Datelike, FixedOffset, TimeDelta};
 
 use crate::series::{Record, Series};
-use crate::site::{Inflow, Seepage, Yearly};
+use crate::site::{Inflow, Reach, Yearly};
 
-use super::water::Water;
+use super::water::{Seeping, Water};
 
 /// Farthest reading that still speaks for a moment, h (choice).
 const NEAR_H: i64 = 3;
@@ -41,14 +41,17 @@ pub(super) fn brought(
     Some(Brought { water: Water { flow_m3s, temperature_c, oxygen_mg_l, demand_mg_l: 0.0 }, held })
 }
 
-/// The water that seeps into a whole reach in a month.
-pub(super) fn seeping(seepage: &Seepage, month: u32) -> Water {
-    Water {
-        flow_m3s: seepage.flow_m3s.in_month(month),
+/// The water that seeps into a reach in a month; `None` where none does.
+pub(super) fn seeping_into(reach: &Reach, month: u32) -> Option<Seeping> {
+    let seepage = reach.seepage.as_ref()?;
+    let per_m_m3s = seepage.flow_m3s.in_month(month) / reach.length_m;
+    let water = Water {
+        flow_m3s: per_m_m3s * reach.length_m,
         temperature_c: seepage.temperature_c.in_month(month),
         oxygen_mg_l: seepage.oxygen_mg_l.as_ref().map(|o| o.in_month(month)),
         demand_mg_l: 0.0,
-    }
+    };
+    (per_m_m3s > 0.0).then_some(Seeping { per_m_m3s, water })
 }
 
 /// By the hour the nearest reading; else, or where none is near, the mean of the readings of the day.

@@ -72,11 +72,14 @@ fn code(cell: &'static str) -> Option<&'static str> {
 #[test]
 fn scenario_every_example_of_the_files_reference_is_accepted() {
     let mut folders: Vec<(String, Vec<(String, String)>)> = Vec::new();
+    let mut sides: Vec<(usize, &str, String)> = Vec::new();
     for (words, text) in fences() {
         match words.split(' ').collect::<Vec<_>>()[..] {
             ["yaml", "site"] => folders.push((text, Vec::new())),
             // a cast belongs to the site above it
             ["csv", "cast", name] => folders.last_mut().unwrap().1.push((name.into(), text)),
+            // a file beside the casts, of the site above it
+            ["csv", "side", name] => sides.push((folders.len() - 1, name, text)),
             // weather has a test of its own below
             ["csv", "weather"] | ["text"] => {}
             _ => panic!("unknown kind of example: {words}"),
@@ -84,9 +87,12 @@ fn scenario_every_example_of_the_files_reference_is_accepted() {
     }
     let count = (folders.len(), folders.iter().map(|f| f.1.len()).sum::<usize>());
     assert!(count.0 >= 2 && count.1 >= 3, "{count:?}");
-    for (site, casts) in folders {
+    for (i, (site, casts)) in folders.into_iter().enumerate() {
         let folder = tempfile::tempdir().unwrap();
         fs::write(folder.path().join("site.yaml"), site).unwrap();
+        for (_, name, text) in sides.iter().filter(|side| side.0 == i) {
+            fs::write(folder.path().join(name), text).unwrap();
+        }
         fs::create_dir(folder.path().join("profiles")).unwrap();
         for (name, text) in &casts {
             fs::write(folder.path().join("profiles").join(name), text).unwrap();
@@ -238,6 +244,10 @@ wells: [ { name: W, conduit: 1 } ]
 pool: { bed: 0, full: 10, table: [[0, 0], [10, 1000]] }
 outlets: [ { name: A, centre: 3, height: 1, width: 1, positions: [ { name: open } ] } ]
 targets: [ { name: t, high: 14 } ]
+river:
+  monthly: { air: 12, dew_point: 8, wind: 2, radiation_w_m2: 200 }
+  afterbay: { volume: 1000, area: 100 }
+  reaches: [ { name: R, length_km: 5, width: 20, depth: 1, slope: 0.001, inflows: [ { name: S, at_km: 2, flow: 1, temperature: 9 } ] } ]
 ";
 
 #[test]

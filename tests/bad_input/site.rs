@@ -7,7 +7,7 @@ use std::path::Path;
 use gatemix::files::site::site;
 use gatemix::problem::Weight;
 
-use super::{aeration, limits, targets};
+use super::{aeration, limits, river, targets};
 
 pub(super) const SOUND: &str = r#"name: Test Dam (invented)
 units: { length: m, area: m2, volume: m3, flow: m3/s, temperature: C }
@@ -266,10 +266,19 @@ fn law_every_kind_of_problem_a_site_can_have_has_a_case() {
     for folder in ["src/site", "src/files/site"] {
         gather(&Path::new(env!("CARGO_MANIFEST_DIR")).join(folder), &mut kinds);
     }
-    let cases: BTreeSet<&str> = all().chain(FLAGGED).chain(aeration::FLAGGED).map(|c| c.2).collect();
+    let flagged = FLAGGED.iter().chain(aeration::FLAGGED).chain(river::FLAGGED);
+    let cases: BTreeSet<&str> = all().chain(river::REFUSED).chain(flagged).map(|c| c.2).collect();
     // shown by the two tests above
-    let elsewhere =
-        ["mixed-loss", "unknown-well", "no-outlet", "table-short", "volume-without-area", "table-empty"];
+    let elsewhere = [
+        "damp",
+        "no-reach",
+        "mixed-loss",
+        "unknown-well",
+        "no-outlet",
+        "table-short",
+        "volume-without-area",
+        "table-empty",
+    ];
     let missing: Vec<&String> =
         kinds.iter().filter(|k| !cases.contains(k.as_str()) && !elsewhere.contains(&k.as_str())).collect();
     assert!(kinds.len() > 30 && missing.is_empty(), "{missing:?} of {kinds:?}");

@@ -21,7 +21,7 @@ pub(super) fn reaches(river: &RawRiver, problems: &mut Vec<Problem>) -> Vec<Opti
     let mut out = Vec::new();
     for (i, r) in river.reaches.iter().enumerate() {
         let built = reach(r, &format!("river.reaches[{i}]"), from_m, problems);
-        from_m = from_m.zip(r.length_m).map(|(from, length)| from + length);
+        from_m = from_m.zip(r.length_m.filter(|l| *l > 0.0)).map(|(from, length)| from + length);
         out.push(built);
     }
     out
@@ -72,6 +72,9 @@ fn reach(r: &RawReach, path: &str, from_m: Option<f64>, problems: &mut Vec<Probl
             oxygen_mg_l: s.oxygen_mg_l.clone(),
         })
     });
+    if sizes.iter().any(|(value, ..)| value.is_some_and(|v| v <= 0.0)) {
+        return None;
+    }
     let mut inflows = inflows.into_iter().collect::<Option<Vec<_>>>()?;
     inflows.sort_by(|a, b| a.at_m.total_cmp(&b.at_m));
     let built = Reach {
@@ -92,7 +95,7 @@ fn reach(r: &RawReach, path: &str, from_m: Option<f64>, problems: &mut Vec<Probl
         },
         reaeration_per_day: r.reaeration_per_day,
     };
-    if tables && sizes.iter().all(|(value, ..)| value.is_none_or(|v| v > 0.0)) {
+    if tables {
         rise(&built, at("rise_hours"), problems);
     }
     Some(built)
@@ -153,7 +156,7 @@ fn inflow(
     from_m: Option<f64>,
     problems: &mut Vec<Problem>,
 ) -> Option<Inflow> {
-    if let (Some(at_m), Some(from_m), Some(length_m)) = (w.at_m, from_m, reach.length_m)
+    if let (Some(at_m), Some(from_m), Some(length_m)) = (w.at_m, from_m, reach.length_m.filter(|l| *l > 0.0))
         && !(from_m - SLACK_M..=from_m + length_m + SLACK_M).contains(&at_m)
     {
         let words = format!(
