@@ -67,13 +67,12 @@ fn scenario_rules_that_leave_nothing_in_common_are_a_conflict() {
     let conflicts: Vec<&Value> =
         answer["conflicts"].as_array().unwrap().iter().map(|c| &c["targets"]).collect();
     // 8 at most, 9 at least at the dam; 15 at the bridge takes 13.8 at the dam; a wish conflicts with nothing
-    assert_eq!(
-        conflicts,
-        [&serde_json::json!(["eggs", "mussels"]), &serde_json::json!(["eggs", "holding"])]
-    );
+    assert_eq!(conflicts, [&serde_json::json!(["eggs", "mussels"]), &serde_json::json!(["eggs", "holding"])]);
     let told = answer["warnings"].as_array().unwrap().iter().filter(|w| w["kind"] == "conflict");
     let texts: Vec<&str> = told.map(|w| w["text"].as_str().unwrap()).collect();
-    assert!(texts.iter().any(|t| t.contains("`eggs` and `holding` leave no temperature at the dam in common")));
+    assert!(
+        texts.iter().any(|t| t.contains("`eggs` and `holding` leave no temperature at the dam in common"))
+    );
     assert!(texts.iter().any(|t| t.contains("`eggs` and `mussels` leave no temperature of the release")));
     let mussels = target(&answer, "mussels");
     assert_eq!((&mussels["held_as_wish"], &mussels["soft"]), (&true.into(), &false.into()));
@@ -89,7 +88,8 @@ fn scenario_a_wish_is_never_missed() {
         let folder = ruled(rule);
         // 12 C of the deeper gate and the sluice keeps `holding` in temperature; its oxygen is another matter
         let site = std::fs::read_to_string(folder.site_file()).unwrap();
-        std::fs::write(folder.site_file(), with(&with(&site, ", oxygen_min: 7", ""), "low: 9", "low: 2")).unwrap();
+        std::fs::write(folder.site_file(), with(&with(&site, ", oxygen_min: 7", ""), "low: 9", "low: 2"))
+            .unwrap();
         run(&["mix", folder.named(), "--set", "N1=15", "--set", "Sluice=5", "--strict"]).code
     });
     assert_eq!(codes, [Some(0), Some(4)]);

@@ -4,6 +4,7 @@ use std::cell::RefCell;
 use std::collections::HashMap;
 use std::rc::Rc;
 
+use super::afar::Afar;
 use gatemix::intake::{
     ASSUMED_LOSS, Entering, Port, Shaft, crest_flow_m3s, is_wet, leak_m3s, spills_by_itself,
 };
