@@ -17,6 +17,7 @@ mod rank_answers;
 mod refused;
 mod since;
 mod stories;
+mod targets;
 mod typed_back;
 mod units;
 mod wells;
