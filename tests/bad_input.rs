@@ -2,10 +2,10 @@
 
 #![expect(clippy::unwrap_used, reason = "helpers of tests stand outside test functions")]
 
-#[path = "bad_input/around.rs"]
-mod around;
 #[path = "bad_input/aeration.rs"]
 mod aeration;
+#[path = "bad_input/around.rs"]
+mod around;
 #[path = "bad_input/atomic.rs"]
 mod atomic;
 #[path = "bad_input/cursor.rs"]

@@ -15,6 +15,7 @@ mod rank;
 mod rank_answers;
 mod refused;
 mod since;
+mod sorrel;
 mod stories;
 mod typed_back;
 mod units;
