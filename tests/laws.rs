@@ -18,6 +18,8 @@ mod levelling;
 mod mix;
 #[path = "laws/rank/mod.rs"]
 mod rank;
+#[path = "laws/river/mod.rs"]
+mod river;
 #[path = "laws/series.rs"]
 mod series;
 #[path = "laws/shape.rs"]

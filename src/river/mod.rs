@@ -16,6 +16,9 @@ mod slices;
 mod stream;
 mod water;
 
+#[cfg(test)]
+mod tests;
+
 pub use back::{
     Figure, Floor, LeastOxygen, MOST_OXYGEN_MG_L, RELEASES_C, Wanted, Window, latest, least_oxygen, window,
 };

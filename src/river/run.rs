@@ -196,7 +196,7 @@ impl<'a> Run<'a> {
     /// Hours to each point by a flow at the dam: see [`hours`].
     pub(super) fn hours(&self, flow_m3s: f64) -> Vec<Hours> {
         let noon = self.time(DAY_H / 2.0).unwrap_or(self.midnight);
-        hours(self.river, self.conditions, noon, &self.legs, flow_m3s)
+        hours(self.river, self.conditions, noon, &legs(self.river, 0), flow_m3s)
     }
 
     /// What is to be told of the way.

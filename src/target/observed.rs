@@ -4,12 +4,12 @@
 //!
 //! Methods: `docs/methods.md`, section 7.
 
-use chrono::{Datelike, NaiveDate};
+use chrono::NaiveDate;
 
 use crate::series::{Coverage, Daily, Day, Days, exceeds};
 
 use super::tally::{Held, Mark, held};
-use super::{OxygenStatistic, Standing, Statistic, Target, YearDay};
+use super::{OxygenStatistic, Standing, Statistic, Target};
 
 /// A record held against a rule.
 #[derive(Debug, Clone, Default, PartialEq)]
@@ -89,7 +89,7 @@ impl Target {
             Statistic::SevenDayMeanOfMaxima => self.against(days.mean_over(date, 7, coverage, |d| d.max)),
             Statistic::MeanOfDays(n) => self.against(days.mean_over(date, n, coverage, |d| d.mean)),
             Statistic::DegreeDays { base_c, since } => {
-                let since = since.last_before(date);
+                let since = since.last_on(date).unwrap_or(date);
                 self.against(days.degree_days(since, date, base_c, coverage))
             }
             Statistic::DaysInARow(n) => {
@@ -176,17 +176,5 @@ fn beyond(day: Option<&Day>, high: f64, spent: Mark) -> Mark {
         None => Mark::UNKNOWN,
         Some(day) if exceeds(day.max, high) => spent,
         Some(_) => Mark { value: spent.value, standing: Standing::Inside, by: Some(0.0) },
-    }
-}
-
-impl YearDay {
-    /// The last such day of a calendar up to a date, that date included; 29 February is 1 March in other years.
-    pub fn last_before(self, date: NaiveDate) -> NaiveDate {
-        let of_year = |year| {
-            NaiveDate::from_ymd_opt(year, self.month, self.day)
-                .or_else(|| NaiveDate::from_ymd_opt(year, self.month + 1, 1))
-        };
-        let years = [date.year(), date.year() - 1];
-        years.into_iter().filter_map(of_year).find(|day| *day <= date).unwrap_or(date)
     }
 }

@@ -122,7 +122,7 @@ fn published_a_span_over_new_year_counts_by_the_season_in_which_it_began() {
 
 #[test]
 fn published_the_first_day_of_a_span() {
-    let began = |span: Span, day: &str| span.began(date(day)).to_string();
+    let began = |span: Span, day: &str| span.began(date(day)).unwrap().to_string();
     let winter = span("11-01", "03-31");
     assert_eq!(began(winter, "2026-12-31"), "2026-11-01");
     assert_eq!(began(winter, "2027-01-01"), "2026-11-01");

@@ -207,11 +207,8 @@ fn asked(context: &Context, way: &Way, window: &Window, rules: &[&RuleToday]) ->
         return [of_means(|t| t.low_c, f64::max), of_means(|t| t.high_c, f64::min)];
     };
     let mean_c = |release_c: f64| {
-        let parts: Vec<Part> = way
-            .released()
-            .into_iter()
-            .map(|part| Part { temperature_c: release_c, ..part })
-            .collect();
+        let parts: Vec<Part> =
+            way.released().into_iter().map(|part| Part { temperature_c: release_c, ..part }).collect();
         let there = course(context.site(), &context.conditions, context.on.date_naive(), &parts)?;
         Some(there.points.iter().find(|p| p.point == point)?.figures.mean_c)
     };

@@ -283,6 +283,8 @@ fn try_case(case: &Case, tally: &mut Tally) {
         ),
         ("set now", question.now.is_some()),
         ("parts of the day", question.blocks.len() > 1),
+        ("conduits that add oxygen", dam.site.aerates()),
+        ("such conduits that share levels", dam.site.aerates() && levels),
         ("left out", !question.without.is_empty()),
         ("hopeless", !works.hopeless().is_empty()),
     ] {

@@ -1,11 +1,13 @@
 //! One mix judged from scratch: what it gives, which limits it breaks, where it stands in the order.
 
+use std::collections::BTreeMap;
 use std::rc::Rc;
 
 use gatemix::mix::Asked;
 use gatemix::mix::limits::{self, Before, Check, Rule, Whole};
 use gatemix::mix::{Gate, Level};
 use gatemix::rank::{Criterion, Question};
+use gatemix::site::Aeration;
 use gatemix::target::Statistic;
 use gatemix::withdrawal::Sink;
 
@@ -143,7 +145,7 @@ impl Works<'_> {
             };
             let known = streams.iter().all(|(_, w)| w.oxygen_mg_l.is_some());
             temperatures.push(mean(&|w| w.temperature_c));
-            oxygens.push(known.then(|| mean(&|w| w.oxygen_mg_l.unwrap_or(0.0))));
+            oxygens.push(known.then(|| self.below_mg_l(levels)));
             cold_m3s += weights[block] * flow_m3s * mean(&|w| w.cold_share);
             mean_m3s += weights[block] * flow_m3s;
             let through = |outlets: &[usize]| {
@@ -183,6 +185,31 @@ impl Works<'_> {
             hours: moves.map_or(0.0, |m| m.crew_hours),
         };
         (day.water(self.question), worst(checks))
+    }
+
+    /// Oxygen below the dam: what each well and each outlet on none carries gains on its way.
+    fn below_mg_l(&self, levels: &[Level]) -> f64 {
+        let site = self.site();
+        let mut conduits: BTreeMap<String, (Option<Aeration>, [f64; 4])> = BTreeMap::new();
+        for level in levels.iter().filter(|l| l.sink.flow_m3s > 0.0) {
+            let Sink { centre_m, flow_m3s, opening } = level.sink;
+            let water = self.curve(centre_m, opening).at(flow_m3s);
+            for (&outlet, flow) in level.outlets.iter().zip(&level.flows_m3s) {
+                let o = &site.outlets[outlet];
+                let well = o.well.map(|w| &site.wells[w]);
+                let (name, aeration) = well.map_or((&o.name, o.aeration), |w| (&w.name, w.aeration));
+                let (_, sums) = conduits.entry(name.clone()).or_insert((aeration, [0.0; 4]));
+                let each = [1.0, water.temperature_c, water.oxygen_mg_l.unwrap_or(0.0), water.salt_g_per_kg];
+                sums.iter_mut().zip(each).for_each(|(sum, each)| *sum += flow * each);
+            }
+        }
+        let gained = |(aeration, [flow, heat, oxygen, salt]): &(Option<Aeration>, [f64; 4])| {
+            let (t, o) = (heat / flow, oxygen / flow);
+            let saturation = site.saturation_below_mg_l(t, salt / flow);
+            flow * aeration.map_or(o, |a| a.by.below_mg_l(o, saturation, t))
+        };
+        let carried = conduits.values().filter(|c| c.1[0] > 0.0);
+        carried.clone().map(gained).sum::<f64>() / carried.map(|c| c.1[0]).sum::<f64>()
     }
 
     /// Limits that the release asked for breaks, whatever the mix.

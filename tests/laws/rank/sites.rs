@@ -4,7 +4,7 @@ use gatemix::mix::limits::Before;
 use gatemix::mix::{Day, Gate, Setting};
 use gatemix::profile::Profile;
 use gatemix::rank::{Criterion, Question};
-use gatemix::site::{Leakage, Opens, Position, Raw, RawOutlet, RawTarget, RawWell, Site};
+use gatemix::site::{Leakage, Opens, Position, Raw, RawAeration, RawOutlet, RawTarget, RawWell, Site};
 use proptest::prelude::*;
 
 use super::dice::Dice;
@@ -17,6 +17,8 @@ const PLACES: [f64; 9] = [0.06, 0.25, 0.255, 0.26, 0.5, 0.505, 0.75, 0.88, 0.88]
 /// Openings the crew can set; none where any flow can be.
 const POSITIONS: [&[f64]; 4] = [&[], &[0.0, 0.5, 1.0], &[0.3, 1.0], &[1.0, 0.6]];
 const NAMES: [&str; 5] = ["C", "A", "E", "B", "D"];
+/// Seed of what conduits add.
+const AIR: u64 = 0x0A1B;
 pub(super) const WELLS: [&str; 2] = ["West", "East"];
 
 /// A dam and what is asked of it.
@@ -78,6 +80,7 @@ pub(super) fn case(seed: u64, limits: bool) -> Case {
     let with_losses = dice.draw(any::<bool>());
     let count = 2 + dice.below(4);
     raw.outlets = NAMES[..count].iter().map(|name| outlet(name, wells, with_losses, &water, dice)).collect();
+    aerate(&mut raw, &mut Dice::new(seed ^ AIR));
     raw.targets = (0..dice.below(4)).map(|i| target(i, &water, dice)).collect();
     raw.bins.temperature_c = dice.one_of(&[0.5, 0.25, 1.0]);
     raw.bins.oxygen_mg_l = dice.one_of(&[0.5, 0.3]);
@@ -145,6 +148,24 @@ fn outlet(name: &str, wells: usize, with_losses: bool, water: &Pool, dice: &mut 
     out.leakage =
         dice.once_in(3).then(|| Leakage { flow_m3s: leak, head_m: dice.between(1.0..20.0), range_m3s: None });
     out
+}
+
+/// Lets some conduits add oxygen; drawn apart, so that the rest of a case is as it was.
+fn aerate(raw: &mut Raw, dice: &mut Dice) {
+    if !dice.once_in(3) {
+        return;
+    }
+    let mut some = || {
+        let one = match dice.below(4) {
+            0 => RawAeration { fall_m: Some(dice.between(0.5..6.0)), ..RawAeration::default() },
+            1 => RawAeration { efficiency: Some(dice.between(0.0..1.0)), ..RawAeration::default() },
+            2 => RawAeration { gain_mg_l: Some(dice.between(0.2..4.0)), ..RawAeration::default() },
+            _ => return None,
+        };
+        Some(one)
+    };
+    raw.wells.iter_mut().for_each(|well| well.aeration = some());
+    raw.outlets.iter_mut().filter(|o| o.well.is_none()).for_each(|outlet| outlet.aeration = some());
 }
 
 /// A crest instead of a port: stacked leaves, gated, or spilling by itself.

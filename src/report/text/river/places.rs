@@ -14,6 +14,10 @@ use super::super::{length, oxygen, temperature};
 pub struct PlaceRow {
     /// What it tells.
     pub label: String,
+    /// The same where room is scarce.
+    pub short: String,
+    /// What is left out first where room is scarce: the larger, the sooner; 0 never.
+    pub spare: u8,
     /// Of which release, where it is of one.
     pub of: Option<Which>,
     /// The cells, the dam first.
@@ -27,16 +31,19 @@ const NONE: &str = "-";
 pub fn places(context: &Context, answer: &RiverAnswer, system: System) -> Vec<PlaceRow> {
     let points = points(context);
     let distance = |p: &Point| show(p.at_m, Dimension::Distance, system, 1);
-    let row = |label: &str, dam: &str, of: &dyn Fn(usize, &Point) -> String| PlaceRow {
-        label: label.to_owned(),
-        of: None,
-        cells: std::iter::once(dam.to_owned())
-            .chain(points.iter().enumerate().map(|(i, p)| of(i, p)))
-            .collect(),
-    };
+    let row =
+        |(label, short, spare): (&str, &str, u8), dam: &str, of: &dyn Fn(usize, &Point) -> String| PlaceRow {
+            label: label.to_owned(),
+            short: short.to_owned(),
+            spare,
+            of: None,
+            cells: std::iter::once(dam.to_owned())
+                .chain(points.iter().enumerate().map(|(i, p)| of(i, p)))
+                .collect(),
+        };
     let mut out = vec![
-        row("", "dam", &|i, p| format!("{} {}", i + 1, harmless(&p.name))),
-        row("from the dam", NONE, &|_, p| distance(p)),
+        row(("", "", 0), "dam", &|i, p| format!("{} {}", i + 1, harmless(&p.name))),
+        row(("from the dam", "distance", 0), NONE, &|_, p| distance(p)),
     ];
     if let Some(course) = answer.spoken().and_then(|w| w.course.as_ref()) {
         let hours = |of: fn(&AtPoint) -> f64| {
@@ -44,10 +51,10 @@ pub fn places(context: &Context, answer: &RiverAnswer, system: System) -> Vec<Pl
                 course.points.get(i).map_or_else(|| NONE.into(), |a| format!("{:.1} h", of(a)))
             }
         };
-        out.push(row("water takes", NONE, &hours(|a| a.travel_h)));
-        out.push(row("first rise possible", NONE, &hours(|a| a.rise_first_h)));
-        out.push(row("bulk of a rise", NONE, &hours(|a| a.rise_h)));
-        out.push(row("warning time", NONE, &|_, p| {
+        out.push(row(("water takes", "water", 0), NONE, &hours(|a| a.travel_h)));
+        out.push(row(("first rise possible", "rise from", 1), NONE, &hours(|a| a.rise_first_h)));
+        out.push(row(("bulk of a rise", "rise bulk", 1), NONE, &hours(|a| a.rise_h)));
+        out.push(row(("warning time", "warning", 4), NONE, &|_, p| {
             p.warning_h.map_or_else(|| NONE.into(), |h| format!("{h:.1} h"))
         }));
     }
@@ -66,8 +73,10 @@ fn of_way(way: &Way, points: usize, system: System) -> Vec<PlaceRow> {
     let name = way.which.word();
     let at = |i: usize| way.course.as_ref().and_then(|c| c.points.get(i));
     let unit = system.unit(Dimension::Temperature);
-    let row = |what: &str, dam: String, of: &dyn Fn(usize) -> Option<String>| PlaceRow {
+    let row = |(what, spare): (&str, u8), dam: String, of: &dyn Fn(usize) -> Option<String>| PlaceRow {
         label: format!("{name} {what}"),
+        short: what.to_owned(),
+        spare,
         of: Some(way.which),
         cells: std::iter::once(dam)
             .chain((0..points).map(|i| of(i).unwrap_or_else(|| NONE.into())))
@@ -79,17 +88,17 @@ fn of_way(way: &Way, points: usize, system: System) -> Vec<PlaceRow> {
     let of_day = way.at_dam();
     let greatest = way.parts.iter().map(|p| p.release.temperature_c).fold(f64::NEG_INFINITY, f64::max);
     let mut out = vec![
-        row("mean", temperature(way.temperature_c(), system), &|i| {
+        row(("mean", 0), temperature(way.temperature_c(), system), &|i| {
             Some(temperature(at(i)?.figures.mean_c, system))
         }),
-        row("10-90 %", band(of_day.band_c()).unwrap_or_else(|| NONE.into()), &|i| {
+        row(("10-90 %", 3), band(of_day.band_c()).unwrap_or_else(|| NONE.into()), &|i| {
             band(way.spreads.get(i)?.band_c())
         }),
-        row("greatest", temperature(greatest, system), &|i| {
+        row(("greatest", 2), temperature(greatest, system), &|i| {
             let (greatest, _) = at(i)?.figures.range_c?;
             Some(temperature(greatest, system))
         }),
-        row("oxygen", oxygen(way.oxygen_mg_l()), &|i| Some(oxygen(at(i)?.figures.oxygen_mean_mg_l))),
+        row(("oxygen", 0), oxygen(way.oxygen_mg_l()), &|i| Some(oxygen(at(i)?.figures.oxygen_mean_mg_l))),
     ];
     if way.course.is_none() {
         out.truncate(2);

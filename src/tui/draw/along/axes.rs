@@ -74,22 +74,25 @@ impl Frame {
     /// Draws everything but the water.
     pub(super) fn draw(&self, picture: &AlongPicture, pen: &mut Pen, look: Look) {
         let ascii = look.symbols == Symbols::Ascii;
-        self.heading(picture, pen);
+        self.heading(picture, pen, ascii);
         self.side(pen, ascii);
         self.foot(picture, pen, ascii);
     }
 
-    fn heading(&self, picture: &AlongPicture, pen: &mut Pen) {
+    fn heading(&self, picture: &AlongPicture, pen: &mut Pen, ascii: bool) {
         let unit = picture.system.unit(picture.dimension).symbol();
         let title = format!("{}, {unit}", picture.title);
         pen.put(0, 0, &title, Role::Strong);
         let mut legend: Vec<String> =
             picture.ways.iter().map(|w| format!("{} {}", w.letter, w.name)).collect();
         if picture.points.iter().any(|p| p.range.0.is_some() || p.range.1.is_some()) {
-            legend.push("[ asked".to_owned());
+            legend.push(format!("{} asked", if ascii { '[' } else { '┃' }));
             if picture.points.iter().any(|p| p.window.is_some()) {
-                legend.push("( release for it".to_owned());
+                legend.push(format!("{} release for it", if ascii { '(' } else { '┋' }));
             }
+        }
+        if picture.ways.iter().any(|w| !w.bands.is_empty()) {
+            legend.push(format!("{} 10-90 %", if ascii { 'I' } else { '│' }));
         }
         let room = self.width.saturating_sub(title.width() + 2);
         while legend.join("  ").width() > room && legend.len() > picture.ways.len() {
@@ -101,9 +104,9 @@ impl Frame {
     fn side(&self, pen: &mut Pen, ascii: bool) {
         let (line, tick) = if ascii { ("|", "+") } else { ("│", "┤") };
         (0..self.rows).for_each(|row| pen.put(SIDE - 1, OVER + row, line, Role::Quiet));
-        let ticks = ticks(self.y.low(), self.y.high(), ticks_in(self.rows, TICK_ROWS));
-        let decimals = decimals(&ticks);
-        for value in ticks {
+        let marks = self.y.marks(ticks_in(self.rows, TICK_ROWS));
+        let decimals = usize::from(marks.decimals);
+        for value in marks.values {
             let row = self.row(value);
             pen.put_before(SIDE - 1, row, &format!("{value:.decimals$} "), Role::Quiet);
             pen.put(SIDE - 1, row, tick, Role::Quiet);

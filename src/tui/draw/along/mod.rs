@@ -24,8 +24,8 @@ pub struct AlongWay {
     pub name: String,
     /// How its line is drawn.
     pub role: Role,
-    /// Whether the line is dotted.
-    pub dotted: bool,
+    /// How strong its line is.
+    pub stroke: Stroke,
     /// Distance from the dam (m) and value, C or mg/L, from the dam down.
     pub places: Vec<(f64, f64)>,
     /// Distance and the 10-90 % band there, where one is drawn.
@@ -95,9 +95,8 @@ pub fn along(picture: &AlongPicture, area: Rect, buf: &mut Buffer, look: Look) {
     marks::asked(picture, &frame, &mut pen, look);
     for way in &picture.ways {
         let mut dots = Dots::new(look.symbols.grain(), frame.cols, frame.rows);
-        let stroke = if way.dotted { Stroke::Dotted } else { Stroke::Heavy };
         let points: Vec<(f64, f64)> = way.places.iter().map(|p| (p.0, picture.shown(p.1))).collect();
-        dots.curve(0, stroke, &points, &frame.x, &frame.y);
+        dots.curve(0, way.stroke, &points, &frame.x, &frame.y);
         for row in 0..frame.rows {
             for col in 0..frame.cols {
                 if let Some(spot) = dots.spot(col, row) {

@@ -2,11 +2,11 @@ use super::*;
 use crate::tui::{Symbols, Theme};
 
 fn picture() -> AlongPicture {
-    let way = |letter, name: &str, role, dotted, from: f64| AlongWay {
+    let way = |letter, name: &str, role, stroke, from: f64| AlongWay {
         letter,
         name: name.into(),
         role,
-        dotted,
+        stroke,
         places: (0..=30).map(|i| (1000.0 * f64::from(i), from + 0.25 * f64::from(i))).collect(),
         bands: vec![(18_000.0, [from + 4.0, from + 5.0])],
     };
@@ -16,7 +16,10 @@ fn picture() -> AlongPicture {
         dimension: Dimension::Temperature,
         system: System::Si,
         length_m: 30_000.0,
-        ways: vec![way('N', "now", Role::Now, true, 8.0), way('T', "tried", Role::Tried, false, 12.0)],
+        ways: vec![
+            way('N', "now", Role::Now, Stroke::Dotted, 8.0),
+            way('T', "tried", Role::Tried, Stroke::Heavy, 12.0),
+        ],
         points: vec![
             point("Mill Bridge", 18_000.0, (Some(12.0), Some(16.0)), Some((Some(9.0), Some(13.0)))),
             point("Lower Ford", 30_000.0, (None, Some(18.0)), None),
@@ -38,9 +41,6 @@ fn drawn(picture: &AlongPicture, width: u16, height: u16) -> Vec<String> {
 #[test]
 fn scenario_two_releases_on_their_way_past_two_points() {
     let lines = drawn(&picture(), 60, 14);
-    for line in &lines {
-        println!("{line}");
-    }
     assert!(lines[0].starts_with("Temperature, C") && lines[0].contains("N now  T tried"), "{}", lines[0]);
     assert!(lines[13].contains("1 Mill Bridge") && lines[13].contains("2 Lower Ford"), "{}", lines[13]);
     assert!(lines[13].contains("Tansy Creek") && lines[12].trim_start().starts_with("dam"), "{}", lines[13]);

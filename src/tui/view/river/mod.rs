@@ -169,7 +169,10 @@ fn write(lines: &Lines, area: Rect, from: usize, model: &Model, buf: &mut Buffer
     }
 }
 
-/// Adds words, wrapped, later lines indented.
+/// Adds words, wrapped, later lines indented; the first as far as its words are.
 fn say(lines: &mut Lines, text: &str, width: usize, indent: usize, role: Role) {
-    lines.extend(wrapped(text, width, indent).into_iter().map(|line| (line, role)));
+    let lead = text.len() - text.trim_start().len();
+    let mut told = wrapped(text, width.saturating_sub(lead), indent.saturating_sub(lead));
+    told.iter_mut().for_each(|line| line.insert_str(0, &text[..lead]));
+    lines.extend(told.into_iter().map(|line| (line, role)));
 }

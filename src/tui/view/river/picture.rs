@@ -1,5 +1,6 @@
 //! The pictures along the river: temperature and oxygen, every release, what each point asks.
 
+use crate::plot::Stroke;
 use crate::problem::harmless;
 use crate::river::{Figures, Place};
 use crate::target::{DAM, Target};
@@ -55,7 +56,7 @@ fn ways(screen: &Screen, dimension: Dimension) -> Vec<AlongWay> {
             letter,
             name: way.which.word().to_owned(),
             role,
-            dotted: way.which != Which::Tried,
+            stroke: stroke(way.which),
             places: course.along.iter().filter_map(place).collect(),
             bands,
         })
@@ -69,6 +70,15 @@ pub(super) fn mark(which: Which) -> (char, Role) {
         Which::Now => ('N', Role::Now),
         Which::Tried => ('T', Role::Tried),
         Which::Best => ('B', Role::Inside),
+    }
+}
+
+/// Lines that cross are told apart by their strength too.
+fn stroke(which: Which) -> Stroke {
+    match which {
+        Which::Now => Stroke::Dotted,
+        Which::Tried => Stroke::Heavy,
+        Which::Best => Stroke::Thin,
     }
 }
 

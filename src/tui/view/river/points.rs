@@ -1,53 +1,75 @@
 //! The dam and the points side by side, and the release each would need.
 
-use crate::report::text::river;
-use crate::tasks::river::Which;
+use unicode_width::UnicodeWidthStr;
+
+use crate::report::text::river::{self, PlaceRow};
 use crate::tui::look::Role;
 
 use super::super::write::cut;
 use super::picture::mark;
 use super::{Lines, Screen, say};
 
-/// Columns of the labels.
-const LABEL: usize = 16;
-/// Least columns of a place.
-const CELL: usize = 10;
+/// Columns between two places.
+const GAP: usize = 2;
 
-/// As many rows as there is room for; first what is of every release.
+/// As many rows as there is room for: what can be spared goes first.
 pub(super) fn lines(screen: &Screen, width: usize, height: usize) -> Lines {
     let (context, answer, system) = (&screen.down.context, &screen.down.answer, screen.model.system());
-    let mut out = Lines::new();
-    if screen.old {
-        out.push(("from before; the new is being computed".to_owned(), Role::Old));
-    }
-    let rows = river::places(context, answer, system);
-    let count = rows.first().map_or(1, |r| r.cells.len()).max(1);
-    let each = (width.saturating_sub(LABEL) / count).max(CELL);
-    let mut before = None;
-    for row in &rows {
-        if row.of != before && height > rows.len() + answer.windows.len() + 4 {
-            out.push((String::new(), Role::Plain));
-        }
-        before = row.of;
-        let cells: String = row.cells.iter().map(|c| format!("{:<each$}", cut(c, each - 1))).collect();
-        let letter = row.of.map_or(' ', |w: Which| mark(w).0);
-        let role = row.of.map_or(Role::Quiet, |w| mark(w).1);
-        let role = if row.label.is_empty() { Role::Strong } else { role };
-        let label = row.of.map_or(row.label.clone(), |w| {
-            format!("{letter} {}", row.label.trim_start_matches(w.word()).trim_start())
-        });
-        out.push((format!("{:<LABEL$}{cells}", cut(&label, LABEL - 1)), role));
-    }
+    let mut below = Lines::new();
     for window in &answer.windows {
         let name = window.point.map_or_else(
             || "dam".to_owned(),
             |i| format!("{} {}", i + 1, super::rules::point_name(screen, i)),
         );
         let role = if window.reachable { Role::Range } else { Role::Outside };
-        say(&mut out, &format!("{name} needs {}", river::window_words(window, system)), width, 2, role);
+        say(&mut below, &format!("{name} needs {}", river::window_words(window, system)), width, 2, role);
     }
-    for late in river::timely_words(context, answer, system) {
-        say(&mut out, &late, width, 2, Role::Warn);
+    for words in river::timely_words(context, answer, system) {
+        say(&mut below, &words, width, 2, Role::Warn);
     }
+    let head = usize::from(screen.old);
+    let mut rows = river::places(context, answer, system);
+    let room = height.saturating_sub(head + below.len().min(height / 3));
+    while rows.len() > room || wide(&rows) > width {
+        let Some(spare) = rows.iter().map(|r| r.spare).max().filter(|s| *s > 0) else { break };
+        rows.retain(|row| row.spare < spare);
+    }
+    let mut out = Lines::new();
+    if screen.old {
+        out.push(("from before; the new is being computed".to_owned(), Role::Old));
+    }
+    let gaps = rows.len() + below.len() + answer.ways.len() + 1 <= height;
+    let (label, cells) = columns(&rows, width);
+    let mut before = None;
+    for row in &rows {
+        if row.of != before && gaps {
+            out.push((String::new(), Role::Plain));
+        }
+        before = row.of;
+        let text: String = row.cells.iter().map(|c| format!("{:<cells$}", cut(c, cells - GAP))).collect();
+        let (letter, role) = row.of.map_or((None, Role::Quiet), |w| (Some(mark(w).0), mark(w).1));
+        let role = if row.short.is_empty() { Role::Strong } else { role };
+        let name = letter.map_or_else(|| row.short.clone(), |l| format!("{l} {}", row.short));
+        out.push((format!("{name:<label$}{text}"), role));
+    }
+    if gaps {
+        out.push((String::new(), Role::Plain));
+    }
+    out.extend(below);
     out
+}
+
+/// Columns of the labels and of each place.
+fn columns(rows: &[PlaceRow], width: usize) -> (usize, usize) {
+    let label =
+        rows.iter().map(|r| r.short.width() + 2 * usize::from(r.of.is_some())).max().unwrap_or(0) + GAP;
+    let count = rows.first().map_or(1, |r| r.cells.len()).max(1);
+    (label, (width.saturating_sub(label) / count).max(GAP + 4))
+}
+
+/// Columns that every figure needs; the names may be cut.
+fn wide(rows: &[PlaceRow]) -> usize {
+    let (label, _) = columns(rows, 0);
+    let cells = rows.iter().skip(1).flat_map(|r| &r.cells).map(|c| c.width() + GAP).max().unwrap_or(0);
+    label + rows.first().map_or(0, |r| r.cells.len()) * cells
 }

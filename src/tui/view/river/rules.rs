@@ -45,6 +45,8 @@ fn told(screen: &Screen, width: usize) -> Vec<(Option<usize>, String, Role)> {
     for note in &answer.notes {
         add(None, &format!("! {}", note.advice(system)), 2, Role::Warn);
     }
+    out.push((None, String::new(), Role::Plain));
+    out.extend(super::days::strip(screen).into_iter().map(|(line, role)| (None, line, role)));
     out
 }
 
