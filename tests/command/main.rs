@@ -16,6 +16,7 @@ mod rank;
 mod rank_answers;
 mod refused;
 mod since;
+mod sorrel;
 mod stories;
 mod targets;
 mod typed_back;
