@@ -8,6 +8,7 @@ mod rules;
 use std::fmt::Write as _;
 
 use crate::problem::{Problem, harmless};
+use crate::site::Surface;
 use crate::tasks::Context;
 use crate::tasks::river::{RiverAnswer, Way, Which};
 use crate::units::System;
@@ -30,6 +31,7 @@ pub(super) fn body(context: &Context, answer: &RiverAnswer) -> String {
     for way in &answer.ways {
         out.push_str(&labelled(title(way.which), &set_words(context, way, system)));
     }
+    out.push_str(&labelled("River", &weather_words(context)));
     out.push('\n');
     out.push_str(&table(&places(context, answer, system)));
     out.push('\n');
@@ -50,6 +52,27 @@ pub(super) fn body(context: &Context, answer: &RiverAnswer) -> String {
     let notes: Vec<&Problem> = answer.notes.iter().collect();
     out.push_str(&list("The river", &notes, false, system));
     out
+}
+
+/// What the way down is computed with.
+pub fn weather_words(context: &Context) -> String {
+    let site = context.site();
+    let weather = &context.conditions.weather;
+    let Some(river) = &site.river else { return "nothing is told of it".to_owned() };
+    match &river.surface {
+        None => "what it trades with the air is not given".to_owned(),
+        Some(Surface::Given { .. }) => {
+            "given equilibrium temperature and exchange: means of the day".to_owned()
+        }
+        Some(Surface::Monthly(_)) => "mean weather of the month: means of the day".to_owned(),
+        Some(Surface::File(file)) => {
+            let step = if weather.is_hourly() { "hour by hour" } else { "means of the day" };
+            let forecast = weather.forecast_from.map_or_else(String::new, |from| {
+                format!(", forecast from {}", from.with_timezone(&site.offset).format("%Y-%m-%d %H:%M"))
+            });
+            format!("weather of {}: {step}{forecast}", harmless(file))
+        }
+    }
 }
 
 fn title(which: Which) -> &'static str {

@@ -24,6 +24,9 @@ pub struct PlaceRow {
     pub cells: Vec<String>,
 }
 
+/// A change of stage smaller than this is none, m: the figure shown would be zero (choice).
+const SAME_STAGE_M: f64 = 0.05;
+
 /// Where nothing is to be told.
 const NONE: &str = "-";
 
@@ -122,8 +125,10 @@ pub fn window_words(window: &Window, system: System) -> String {
     } else {
         parts.push("OUT OF REACH: no release keeps its range".to_owned());
     }
-    if let Some(least) = window.oxygen_min_mg_l {
-        parts.push(format!("oxygen from {least:.1} mg/L"));
+    match window.oxygen_min_mg_l {
+        Some(least) if least < 0.05 => parts.push("any oxygen".to_owned()),
+        Some(least) => parts.push(format!("oxygen from {least:.1} mg/L")),
+        None => {}
     }
     parts.extend(window.unknown.iter().map(|words| harmless(words)));
     if parts.is_empty() { "nothing is asked".to_owned() } else { parts.join(", ") }
@@ -143,8 +148,11 @@ pub fn stage_words(context: &Context, answer: &RiverAnswer, point: usize, system
     let words = [Which::Tried, Which::Best].into_iter().filter_map(|which| {
         let stage = point_at.stage_m(flow(which)?)?;
         let by = stage - now;
-        let change = if by < 0.0 { "fall" } else { "rise" };
-        Some(format!("{} {change} of stage {}", which.word(), length(by.abs(), system)))
+        if by.abs() < SAME_STAGE_M {
+            return Some(format!("{} leaves the stage as it is now", which.word()));
+        }
+        let change = if by < 0.0 { "lowers" } else { "raises" };
+        Some(format!("{} {change} the stage by {}", which.word(), length(by.abs(), system)))
     });
     let words: Vec<String> = words.collect();
     (!words.is_empty()).then(|| words.join(", "))

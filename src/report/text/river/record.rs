@@ -42,7 +42,10 @@ pub fn record(context: &Context, answer: &RiverAnswer, system: System, width: us
                     say(&mut out, &format!("  season of {year}: {}", tally(season, &unit)), width, false);
                 }
             }
-            out.extend(calendar(held).into_iter().map(|line| (line, false)));
+            // where no day is outside a calendar tells nothing more
+            if held.all.over + held.all.under > 0 {
+                out.extend(calendar(held).into_iter().map(|line| (line, false)));
+            }
             say(&mut out, &format!("  {}", source(rule)), width, false);
         }
     }
@@ -66,19 +69,26 @@ fn unit(rule: &Target, system: System) -> (String, f64) {
 /// `3 of 61 days above, by up to 0.8 C (2026-07-14), 2 in a row; 5 days without enough readings`
 fn tally(tally: &Tally, (unit, times): &(String, f64)) -> String {
     let mut out = Vec::new();
-    for (days, word) in [(tally.over, "above"), (tally.under, "below")] {
-        if days > 0 || (word == "above" && tally.under == 0) {
-            out.push(format!("{days} of {} days {word}", tally.judged));
+    for (count, word) in [(tally.over, "above"), (tally.under, "below")] {
+        if count > 0 {
+            out.push(format!("{count} of {} {word}", days(tally.judged)));
         }
+    }
+    if out.is_empty() {
+        out.push(format!("none of {} outside", days(tally.judged)));
     }
     if let Some((by, on)) = tally.worst {
         out.push(format!("by up to {:.1} {unit} ({on})", times * by));
-        out.push(format!("{} in a row at most", tally.longest_run));
+        out.push(format!("at most {} in a row", tally.longest_run));
     }
     if tally.unknown > 0 {
-        out.push(format!("{} days without enough readings", tally.unknown));
+        out.push(format!("{} without enough readings", days(tally.unknown)));
     }
     out.join(", ")
+}
+
+fn days(count: u32) -> String {
+    if count == 1 { "1 day".to_owned() } else { format!("{count} days") }
 }
 
 /// A line a month: a sign for every day of it.

@@ -11,7 +11,7 @@ use crate::tui::model::Row;
 use crate::tui::update::rules;
 
 use super::super::write::{cut, row_style};
-use super::picture::at;
+use super::picture::{at, mark as letter};
 use super::{Lines, Screen, say};
 
 /// The lines, each with the rule it is of.
@@ -29,15 +29,23 @@ fn told(screen: &Screen, width: usize) -> Vec<(Option<usize>, String, Role)> {
         add(None, "No rule is valid on this date.", 2, Role::Strong);
     }
     for (i, row) in rows.iter().enumerate() {
-        let mark = if screen.session.river.rule == i { ">" } else { " " };
-        let governs = if row.governs { ", governs" } else { "" };
-        let head = format!("{mark} {} at {}: {}{governs}", row.name, row.point, typed(screen, i, row));
-        add(Some(i), &head, 4, Role::Strong);
-        for standing in &row.standings {
+        let chosen = screen.session.river.rule == i;
+        let mark = if chosen { ">" } else { " " };
+        let governs = if row.governs { "; governs" } else { "" };
+        let stands = row.standings.iter().map(|s| format!("{} {}", letter(s.of).0, s.short));
+        let head = format!(
+            "{mark} {} at {}: {}{governs}",
+            row.name,
+            row.point,
+            stands.collect::<Vec<_>>().join("; ")
+        );
+        let missed = row.standings.iter().any(|s| s.missed);
+        add(Some(i), &head, 4, if missed { Role::Outside } else { Role::Strong });
+        add(Some(i), &format!("    {} {}", typed(screen, i, row), row.source), 6, Role::Quiet);
+        for standing in row.standings.iter().filter(|_| chosen) {
             let role = if standing.missed { Role::Outside } else { Role::Plain };
             add(Some(i), &format!("    {}", standing.words), 6, role);
         }
-        add(Some(i), &format!("    {}", row.source), 6, Role::Quiet);
     }
     for words in river::conflicts(context, answer, system) {
         add(None, &format!("! {words}"), 2, Role::Outside);
