@@ -85,3 +85,26 @@ fn scenario_ice_and_reaeration_beyond_its_range_are_told() {
     assert!(kinds(&frozen).contains(&"ice"));
     assert_abs_diff_eq!(frozen.points[0].figures.mean_c, 0.0, epsilon = 1e-12);
 }
+
+/// Rivers no one has still answer with numbers, and soon.
+#[test]
+fn scenario_odd_rivers_give_figures() {
+    for (depth, slope, exchange, seepage) in
+        [(0.001, 0.5, 3000.0, 0.0), (900.0, 1e-9, 1e-6, 0.0), (1.0, 0.001, 30.0, 5000.0)]
+    {
+        let site = dam(&format!(
+            "{{ equilibrium: 44, exchange_w_m2_c: {exchange}, afterbay: {{ volume: 1.0e12, area: 1 }},
+               reaches: [ {{ name: a, length_km: 9000, width: 4, depth: {depth}, slope: {slope},
+               seepage: {{ flow: {seepage}, temperature: 11, oxygen: 6 }} }} ],
+               points: [ {{ name: end, at_km: 9000 }} ], decay: {{ demand: 5000, per_day: 50 }} }}"
+        ));
+        for flow in [0.0, 1e-9, 1e6] {
+            let parts = [part(12.0, flow, 5.0, 8.0), part(12.0, 0.0, 9.0, 0.0)];
+            let figures = course(&site, &Conditions::default(), day(), &parts).unwrap().points[0].figures;
+            let (greatest, least) = figures.range_c.unwrap();
+            assert!(0.0 <= least && least <= figures.mean_c + 1e-9 && greatest <= 44.1, "{figures:?}");
+            let oxygen = figures.oxygen_mean_mg_l.unwrap();
+            assert!(oxygen.is_finite() && figures.oxygen_min_mg_l.unwrap() >= 0.0, "{figures:?}");
+        }
+    }
+}
