@@ -4,7 +4,7 @@
 
 use crate::problem::Problem;
 use crate::site::Site;
-use crate::target::Figure;
+use crate::target::{DAM, Figure};
 use crate::units::say;
 
 use super::day::RuleToday;
@@ -31,6 +31,7 @@ impl Conflict {
         let rule = |i: usize| site.targets.get(self.targets[i]);
         let name = |i: usize| rule(i).map_or("", |t| t.name.as_str());
         let place = match rule(0) {
+            Some(rule) if self.same_place && rule.point == DAM => "at the dam".to_owned(),
             Some(rule) if self.same_place => format!("at {}", rule.point),
             _ => "of the release".to_owned(),
         };

@@ -63,7 +63,7 @@ impl Water {
     }
 }
 
-/// The oxygen of a release that rules are held against, mg/L.
+/// The oxygen of a release that rules are held against, mg/L: below the dam.
 pub(super) fn oxygen(blend: &Blend) -> Option<f64> {
     blend.oxygen_below_mg_l
 }

@@ -9,7 +9,7 @@ use crate::problem::Problem;
 use crate::profile::Profile;
 
 use super::pool::{PoolAnswer, after};
-use super::{Context, Failure};
+use super::{Context, Failure, is_passed_over};
 
 /// One cast of the folder.
 #[derive(Debug, Clone)]
@@ -50,7 +50,8 @@ pub fn casts(context: &Context) -> Vec<Cast> {
             (Arc::new(own), answer)
         });
         if let Some((own, _)) = &pool {
-            problems.clone_from(&own.profile.flags);
+            // what is said of other files is not said of every cast
+            problems = own.profile.flags.iter().filter(|p| !is_passed_over(p)).cloned().collect();
         }
         out.push(Cast {
             file: listed.file.clone(),

@@ -165,11 +165,18 @@ impl Context {
         age_flags(&folder.site, &mut profile, age_days);
         let around = folder.around();
         let said = around.said.clone();
+        // every answer tells which files it passes over, as it does of casts
+        profile.flags.extend(said.iter().filter(|p| is_passed_over(p)).cloned());
         let sources: Vec<&Source> = [&source].into_iter().chain(&around.sources).collect();
         let fingerprint = folder.fingerprint(&sources);
         let conditions = folder.conditions();
         Self { folder, profile, on, on_from, age_days, fingerprint, system, conditions, said, source }
     }
+}
+
+/// Whether a problem says that a file beside the casts is passed over.
+fn is_passed_over(problem: &Problem) -> bool {
+    matches!(problem.kind, "file-missing" | "file-unreadable")
 }
 
 /// Opens what a task works on. `clock` is the time of day of the machine.

@@ -5,7 +5,7 @@ use std::fs;
 use std::path::Path;
 
 use gatemix::files::folder::{Folder, check, stamps};
-use gatemix::problem::any_refused;
+use gatemix::problem::{Problem, any_refused};
 use gatemix::tasks::{Asked, open};
 use tempfile::TempDir;
 
@@ -58,7 +58,7 @@ fn named(dir: &TempDir) -> &str {
 }
 
 /// What is said, without the folder.
-fn short(problems: &[gatemix::problem::Problem], dir: &Path) -> Vec<String> {
+fn short(problems: &[Problem], dir: &Path) -> Vec<String> {
     said(problems).into_iter().map(|p| p.replace(&format!("{}/", dir.display()), "")).collect()
 }
 
@@ -133,6 +133,10 @@ fn scenario_a_record_that_cannot_be_read_is_passed_over_by_name() {
     assert!(told[1].contains("a zip archive"), "{told:?}");
     let all = short(&check(named(&dir)).0, dir.path());
     assert_eq!(all.iter().filter(|p| p.starts_with("tailwater.csv:2: refused:")).count(), 2, "{all:?}");
+    // every answer tells it, the list of casts does not
+    let flags = |problems: &[Problem]| problems.iter().filter(|p| p.kind == "file-unreadable").count();
+    assert_eq!(flags(&context.profile.flags), 2);
+    assert_eq!(gatemix::tasks::casts(&context).iter().map(|c| flags(&c.problems)).sum::<usize>(), 0);
     assert_eq!(gatemix::tasks::pool(&context).outlets.len(), 1, "the pool is answered all the same");
 }
 

@@ -2,6 +2,7 @@
 
 #![expect(clippy::unwrap_used, reason = "helpers of tests stand outside test functions")]
 
+mod aerated;
 mod answered;
 mod casts;
 mod cautions;
@@ -15,7 +16,9 @@ mod rank;
 mod rank_answers;
 mod refused;
 mod since;
+mod sorrel;
 mod stories;
+mod targets;
 mod typed_back;
 mod units;
 mod wells;

@@ -10,15 +10,17 @@
 
 mod operation;
 
+use std::f64::consts::TAU;
 use std::fmt::Write;
 
-use chrono::{NaiveDate, NaiveDateTime};
+use chrono::{NaiveDate, NaiveDateTime, TimeDelta, Timelike};
 use rand_distr::{Distribution, StandardNormal};
 use rand_pcg::Pcg32;
 use serde_yaml::Value;
 
 use super::basin::Basin;
 use super::column::{Column, Water};
+use super::record::{self, Reading, Unit};
 use operation::{Weather, operate, rule_curve_ft};
 
 pub(crate) const FOOT_M: f64 = 0.3048;
@@ -93,8 +95,13 @@ pub(crate) struct Cast {
     pub(crate) rows: Vec<(f64, Water)>,
 }
 
-/// All casts of the site, oldest first.
-pub(crate) fn casts(site: &Site) -> Vec<Cast> {
+/// All that happened: casts, oldest first, and the water that left the dam on each day.
+pub(crate) struct Years {
+    pub(crate) casts: Vec<Cast>,
+    released: Vec<(NaiveDate, Water)>,
+}
+
+pub(crate) fn years(site: &Site) -> Years {
     let times: Vec<NaiveDateTime> =
         TAKEN.iter().map(|text| NaiveDateTime::parse_from_str(text, "%Y-%m-%dT%H:%M").unwrap()).collect();
     let last = times[times.len() - 1].date();
@@ -104,9 +111,12 @@ pub(crate) fn casts(site: &Site) -> Vec<Cast> {
     let (mut weather, mut sensor) = (Weather::new(), Pcg32::new(1480, 2));
     let winter = Water { temperature_c: 5.0, oxygen_mg_l: 11.0, conductance_us_cm: 95.0 };
     let mut column = Column::mixed(&site.basin, site.altitude_m, FOOT_M * rule_curve_ft(day), winter);
-    let mut casts = Vec::new();
+    let (mut casts, mut released) = (Vec::new(), Vec::new());
     while day <= last {
         let forcing = operate(site, &column, day, weather.next());
+        let [(warm_m, warm_m3s), (cold_m, cold_m3s)] = forcing.releases;
+        let share = warm_m3s / (warm_m3s + cold_m3s);
+        released.push((day, column.drawn(cold_m).blended(column.drawn(warm_m), share)));
         for _ in 0..STEPS_A_DAY {
             column.step(&forcing, 86400.0 / f64::from(STEPS_A_DAY));
         }
@@ -119,7 +129,39 @@ pub(crate) fn casts(site: &Site) -> Vec<Cast> {
         }
         day = day.succ_opt().unwrap();
     }
-    casts
+    Years { casts, released }
+}
+
+/// `tailwater.csv`: the last seven weeks by the hour, with four days lost in June.
+pub(crate) fn tailwater(years: &Years) -> (String, String) {
+    let time = |text: &str| NaiveDateTime::parse_from_str(text, "%Y-%m-%dT%H:%M").unwrap();
+    let lost = time("2026-06-20T15:00")..time("2026-06-24T09:00");
+    let noon = |day: &NaiveDate| day.and_hms_opt(12, 0, 0).unwrap();
+    let mut random = Pcg32::new(1481, 3);
+    let mut noisy = |value: f64, deviation: f64| {
+        let draw: f64 = StandardNormal.sample(&mut random);
+        value + deviation * draw
+    };
+    let (mut now, mut readings) = (time("2026-05-26T00:00"), Vec::new());
+    while now <= time("2026-07-14T09:00") {
+        let after = years.released.partition_point(|(day, _)| noon(day) <= now);
+        let after = after.clamp(1, years.released.len() - 1);
+        let ((day, before), (_, then)) = (&years.released[after - 1], &years.released[after]);
+        let share = (now - noon(day)).num_minutes() as f64 / (24.0 * 60.0);
+        let water = before.blended(*then, share.min(1.0));
+        // the gauge stands a little below the dam, in the sun of the afternoon
+        let sun_c = 0.15 * (TAU * (f64::from(now.hour()) - 16.0) / 24.0).cos();
+        if !lost.contains(&now) {
+            readings.push(Reading {
+                time: now,
+                temperature_c: noisy(water.temperature_c + sun_c, NOISE.0),
+                oxygen_mg_l: Some(noisy(water.oxygen_mg_l, NOISE.1)),
+            });
+        }
+        now += TimeDelta::hours(1);
+    }
+    let of = "Ashlar Dam on the Quillon River, the tailwater";
+    ("tailwater.csv".into(), record::text(of, Unit::Fahrenheit, &readings))
 }
 
 /// File name and text of a cast.
@@ -133,7 +175,7 @@ pub(crate) fn file(cast: &Cast) -> (String, String) {
         let (oxygen, conductance) = (water.oxygen_mg_l, water.conductance_us_cm);
         writeln!(text, "{depth_ft:.1},{fahrenheit:.2},{oxygen:.2},{conductance:.1}").unwrap();
     }
-    (format!("{}.csv", cast.taken.date()), text)
+    (format!("profiles/{}.csv", cast.taken.date()), text)
 }
 
 /// Lowers the sonde: every 3 ft through the layers that matter, every 10 ft below, to 3 ft above the bed.

@@ -9,7 +9,6 @@ pub(crate) struct Reading {
     pub(crate) time: NaiveDateTime,
     pub(crate) temperature_c: f64,
     pub(crate) oxygen_mg_l: Option<f64>,
-    pub(crate) mark: Option<&'static str>,
 }
 
 /// The scale of the thermometer.
@@ -19,27 +18,16 @@ pub(crate) enum Unit {
     Fahrenheit,
 }
 
-/// The file; the column of marks stands where any reading has one.
+/// The file.
 pub(crate) fn text(of: &str, unit: Unit, readings: &[Reading]) -> String {
-    let marked = readings.iter().any(|reading| reading.mark.is_some());
+    let letter = if unit == Unit::Celsius { 'C' } else { 'F' };
     let mut text = format!("# {of}: invented readings of an invented place.\n# data: provisional\n");
-    text.push_str(if unit == Unit::Celsius {
-        "time,temperature_C,oxygen_mg_l"
-    } else {
-        "time,temperature_F,oxygen_mg_l"
-    });
-    text.push_str(if marked { ",mark\n" } else { "\n" });
+    writeln!(text, "time,temperature_{letter},oxygen_mg_l").unwrap();
     for reading in readings {
         let c = reading.temperature_c;
         let shown = if unit == Unit::Celsius { c } else { 32.0 + 1.8 * c };
-        write!(text, "{},{shown:.2},", reading.time.format("%Y-%m-%dT%H:%M")).unwrap();
-        if let Some(oxygen) = reading.oxygen_mg_l {
-            write!(text, "{oxygen:.2}").unwrap();
-        }
-        if marked {
-            write!(text, ",{}", reading.mark.unwrap_or_default()).unwrap();
-        }
-        text.push('\n');
+        let oxygen = reading.oxygen_mg_l.map(|oxygen| format!("{oxygen:.2}")).unwrap_or_default();
+        writeln!(text, "{},{shown:.2},{oxygen}", reading.time.format("%Y-%m-%dT%H:%M")).unwrap();
     }
     text
 }

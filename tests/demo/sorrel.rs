@@ -5,8 +5,15 @@
 //! from a fixed seed, and the river below is stepped down by a heat budget and an oxygen balance of its own, so that a
 //! comparison of the program with these records is not one of the program with itself. Every number is a choice for a
 //! warm river at 38 degrees north and 210 m.
+#![expect(
+    clippy::cast_possible_truncation,
+    clippy::cast_sign_loss,
+    clippy::cast_possible_wrap,
+    reason = "hours and days of two years are counted in small numbers from zero"
+)]
 
-pub(crate) mod heat;
+pub(crate) mod believable;
+mod heat;
 mod operation;
 mod river;
 mod stations;
@@ -22,8 +29,8 @@ use serde_yaml::Value;
 use super::basin::Basin;
 use super::column::{Column, Nature, Water};
 use operation::{Inflow, operate, rule_curve_m};
-pub(crate) use river::{Point, Reach};
-pub(crate) use weather::{Hour, Weather};
+use river::{Point, Reach};
+use weather::{Hour, Weather};
 
 /// The column runs from here, mixed as pools are in November.
 const FIRST_DAY: (i32, u32, u32) = (2024, 11, 10);
@@ -54,13 +61,13 @@ const TAKEN: [&str; 14] = [
 
 /// What the makers need to know of the site; read from its own file, so that the two cannot part.
 pub(crate) struct Site {
-    pub(crate) basin: Basin,
-    pub(crate) full_m: f64,
-    pub(crate) latitude: f64,
+    basin: Basin,
+    full_m: f64,
+    latitude: f64,
     /// Centres of the well's ports, m, the highest first.
     ports_m: Vec<f64>,
-    pub(crate) reaches: Vec<Reach>,
-    pub(crate) points: Vec<Point>,
+    reaches: Vec<Reach>,
+    points: Vec<Point>,
 }
 
 impl Site {
@@ -120,7 +127,7 @@ pub(crate) fn years(site: &Site) -> Years {
     let (mut casts, mut days) = (Vec::new(), Vec::new());
     while date <= last {
         let hours = weather.day(date);
-        let (forcing, day) = operate(site, &column, date, hours, &weather);
+        let (forcing, day) = operate(site, &column, date, &hours, &weather);
         days.push(day);
         for _ in 0..STEPS_A_DAY {
             column.step(&forcing, 86400.0 / f64::from(STEPS_A_DAY));

@@ -101,10 +101,8 @@ pub(super) fn degree_days(
         today.observed = earlier > 0;
         return Ok(today.with(rule, sum - base_c, 1.0));
     }
-    let times = f64::from(earlier + 1);
-    today.words =
-        Some(format!("{count} of the {earlier} days before are recorded: every day is taken like today"));
-    Ok(today.with(rule, -times * base_c, times))
+    // a sum over many days like today would say nothing of the rule
+    Err(format!("the record tells {count} of the {earlier} days before that count"))
 }
 
 /// The reference on the date.

@@ -65,6 +65,9 @@ fn words(criterion: Criterion) -> &'static str {
 fn warmth(rule: &Target, standing: &TargetStanding) -> Option<String> {
     let value = standing.value_c?;
     let by = standing.temperature.1.unwrap_or(0.0);
+    if !rule.is_of_temperature() {
+        return difference(rule, standing.temperature.0, value, by);
+    }
     let shown = say::c(value, 1);
     match standing.temperature.0 {
         Standing::Unknown => None,
@@ -80,11 +83,26 @@ fn warmth(rule: &Target, standing: &TargetStanding) -> Option<String> {
     }
 }
 
+/// The same of a difference, or of a sum of degrees.
+fn difference(rule: &Target, standing: Standing, value: f64, by: f64) -> Option<String> {
+    let of = if rule.statistic.is_sum() { " days" } else { " of difference" };
+    let (value, by) = (say::dc(value, 1), say::dc(by, 1));
+    match standing {
+        Standing::Unknown => None,
+        Standing::Inside => Some(format!("{value}{of} is inside its range")),
+        Standing::Below => Some(format!("{value}{of} is {by} too little")),
+        Standing::Above => Some(format!("{value}{of} is {by} too much")),
+    }
+}
+
 fn air(rule: &Target, standing: &TargetStanding) -> Option<String> {
-    let floor = rule.oxygen_min_mg_l?;
+    if !rule.has_floor() {
+        return None;
+    }
     Some(match (standing.oxygen_mg_l, standing.oxygen.0) {
         (Some(oxygen), Standing::Below) => {
-            format!("oxygen {oxygen:.1} mg/L is {:.1} mg/L below its floor", floor - oxygen)
+            let by = standing.oxygen.1.unwrap_or(0.0);
+            format!("oxygen {oxygen:.1} mg/L is {by:.1} mg/L below its floor")
         }
         (Some(oxygen), Standing::Inside) => {
             format!("oxygen {oxygen:.1} mg/L keeps its floor")

@@ -1,6 +1,6 @@
 //! River, brook and ports of the invented years, day by day.
 
-use chrono::NaiveDate;
+use chrono::{Datelike, NaiveDate};
 
 use super::super::column::{Column, Forcing, Water};
 use super::super::season::{through, yearly};
@@ -26,7 +26,7 @@ pub(super) fn operate(
     site: &Site,
     column: &Column,
     date: NaiveDate,
-    hours: [Hour; 24],
+    hours: &[Hour; 24],
     weather: &Weather,
 ) -> (Forcing, Day) {
     let wet = 0.5 + 0.5 * yearly(date, 60.0);
@@ -37,8 +37,8 @@ pub(super) fn operate(
     let wanted_m3 = site.basin.volume_m3(rule_curve_m(date));
     let surplus_m3s = (column.volume_m3() - wanted_m3) / (3.0 * 86400.0);
     let flow_m3s = (inflow_m3s + surplus_m3s).clamp(RELEASE_M3S.0, RELEASE_M3S.1);
-    let (high, share) = blend(site, column, 14.0 + 8.0 * yearly(date, 205.0));
-    let (high_m, low_m) = (site.ports_m[high], site.ports_m[high + 1]);
+    let (high, low, share) = blend(site, column, date, 14.0 + 9.5 * yearly(date, 207.0));
+    let (high_m, low_m) = (site.ports_m[high], site.ports_m[low]);
     let mut released = column.drawn(low_m).blended(column.drawn(high_m), share);
     let missing = oxygen_saturation_mg_l(released.temperature_c, site.full_m - 24.0) - released.oxygen_mg_l;
     released.oxygen_mg_l += REGAINED * missing;
@@ -60,24 +60,29 @@ pub(super) fn operate(
             conductance_us_cm: 330.0 - 70.0 * wet - 20.0 * weather.rain,
         },
         releases: [(high_m, share * flow_m3s), (low_m, (1.0 - share) * flow_m3s)],
-        equilibrium_c: heat::equilibrium_c(&hours),
+        // colder, ice would keep the heat in
+        equilibrium_c: heat::equilibrium_c(hours).max(2.5),
         sun_w_m2: mean(|hour| hour.sun_w_m2),
         wind_m_s: mean(|hour| hour.wind_m_s),
     };
     let mut ports_m3s = vec![0.0; site.ports_m.len()];
     ports_m3s[high] = share * flow_m3s;
-    ports_m3s[high + 1] = (1.0 - share) * flow_m3s;
-    (forcing, Day { date, hours, released, flow_m3s, ports_m3s, brook })
+    ports_m3s[low] = (1.0 - share) * flow_m3s;
+    (forcing, Day { date, hours: *hours, released, flow_m3s, ports_m3s, brook })
 }
 
-/// The upper of two neighbouring ports whose waters lie around the wanted temperature, and the share of it that gives
-/// that; in summer never less than a third from above where the oxygen is.
-fn blend(site: &Site, column: &Column, wanted_c: f64) -> (usize, f64) {
+/// Two ports, the upper first, whose waters lie around the wanted temperature, and the share of the upper that gives it.
+/// They are neighbours; from July on the uppermost and the lowest, whose mix holds more oxygen than the water between.
+fn blend(site: &Site, column: &Column, date: NaiveDate, wanted_c: f64) -> (usize, usize, f64) {
     let waters: Vec<f64> = site.ports_m.iter().map(|&z_m| column.drawn(z_m).temperature_c).collect();
     let shallow = column.pool_m() - site.ports_m[0] < LEAST_OVER_UPPER_M;
-    let high = usize::from(shallow || waters[1] > wanted_c + 0.5);
-    let share = (wanted_c - waters[high + 1]) / (waters[high] - waters[high + 1]).max(0.01);
-    (high, share.clamp(0.33, 1.0))
+    let (high, low) = match (date.month(), shallow) {
+        (7..=9, false) => (0, 2),
+        (_, false) if waters[1] <= wanted_c => (0, 1),
+        _ => (1, 2),
+    };
+    let share = (wanted_c - waters[low]) / (waters[high] - waters[low]).max(0.01);
+    (high, low, share.clamp(0.0, 1.0))
 }
 
 /// The pool the dam is run for, m: lower in winter, full by May, drawn down a little from June on.

@@ -51,7 +51,6 @@ fn record(site: &Site, days: &[Day], at_km: f64, random: &mut Pcg32) -> Vec<Read
                 time: midnight + TimeDelta::hours(hour as i64),
                 temperature_c: noisy(t0 + share * (t1 - t0), NOISE.0),
                 oxygen_mg_l: Some(noisy(o0 + share * (o1 - o0), NOISE.1).max(0.0)),
-                mark: None,
             }
         })
         .collect()

@@ -90,7 +90,7 @@ pub(super) fn file(years: &Years) -> String {
     let first = NaiveDate::from_ymd_opt(last.year(), 5, 1).unwrap();
     let mut text = String::from("# Sorrel Dam on the Tamble River: invented weather of an invented place.\n");
     text.push_str("# wind height: 10 m\n");
-    writeln!(text, "# forecast from: {}T10:00", newest).unwrap();
+    writeln!(text, "# forecast from: {newest}T10:00").unwrap();
     text.push_str("time,air_C,dew_point_C,wind_m_s,cloud_percent,radiation_w_m2\n");
     for day in years.days.iter().filter(|day| day.date >= first) {
         for (clock, hour) in day.hours.iter().enumerate() {

@@ -3,6 +3,7 @@
 mod balance;
 mod band;
 mod checks;
+mod gain;
 mod judging;
 mod leaks;
 mod limits;

@@ -3,14 +3,16 @@
 use std::collections::BTreeMap;
 use std::rc::Rc;
 
-use gatemix::mix::Asked;
+use gatemix::mix::{Asked, is_wish};
+
 use gatemix::mix::limits::{self, Before, Check, Rule, Whole};
 use gatemix::mix::{Gate, Level};
 use gatemix::rank::{Criterion, Question};
 use gatemix::site::Aeration;
-use gatemix::target::Statistic;
+use gatemix::target::{Figure, OxygenFigure};
 use gatemix::withdrawal::Sink;
 
+use super::afar::Afar;
 use super::parts::{Part, Trial, Works, setting, worst};
 
 /// Round-off that the order allows for, in steps of a bin and in C or mg/L.
@@ -184,7 +186,7 @@ impl Works<'_> {
             cost: moves.map_or(0.0, |m| m.cost),
             hours: moves.map_or(0.0, |m| m.crew_hours),
         };
-        (day.water(self.question), worst(checks))
+        (day.water(self.question, &self.afar), worst(checks))
     }
 
     /// Oxygen below the dam: what each well and each outlet on none carries gains on its way.
@@ -247,34 +249,53 @@ struct Day<'a> {
 
 impl Day<'_> {
     /// Its place in the order, by the rules valid at the dam.
-    fn water(&self, question: &Question) -> Water {
+    fn water(&self, question: &Question, afar: &Afar) -> Water {
         let bins = question.site.bins;
         let (mut outside, mut short, mut distance_c) = (0.0_f64, 0.0_f64, 0.0_f64);
         let mut has_floor = false;
         let least = |of: &[f64]| of.iter().copied().fold(f64::INFINITY, f64::min);
         let most = |of: &[f64]| of.iter().copied().fold(f64::NEG_INFINITY, f64::max);
-        let valid = |t: &&gatemix::target::Target| t.span.contains(question.day.date) && t.point == "dam";
-        for rule in question.site.targets.iter().filter(valid) {
-            let values = match rule.statistic {
-                Statistic::DailyMax | Statistic::SevenDayMeanOfMaxima => vec![most(self.temperatures)],
-                Statistic::DailyMin => vec![least(self.temperatures)],
-                Statistic::Instantaneous => vec![most(self.temperatures), least(self.temperatures)],
-                _ => vec![self.mean_c],
+        let site = question.site;
+        let steady = self.temperatures.len() == 1;
+        let mean_c = self.mean_c;
+        for asked in question.day.rules(site).iter() {
+            let wish = is_wish(site, asked.target, &afar.conflicts);
+            // each value with the ends it is held against: `true` for the upper
+            let values: Vec<(f64, [bool; 2])> = match (asked.point, &asked.today) {
+                (_, Err(_)) => Vec::new(),
+                (None, Ok(today)) => match today.figure {
+                    Figure::HourlyChange => Vec::new(),
+                    _ if steady => vec![(mean_c, [true; 2])],
+                    Figure::Max => vec![(most(self.temperatures), [true; 2])],
+                    Figure::Min => vec![(least(self.temperatures), [true; 2])],
+                    Figure::Both => {
+                        vec![(most(self.temperatures), [true; 2]), (least(self.temperatures), [true; 2])]
+                    }
+                    Figure::Mean => vec![(mean_c, [true; 2])],
+                },
+                // with a given equilibrium only the mean is known of a steady day, of blocks every hour
+                (Some(point), Ok(today)) => afar.at_point(point, today.figure, mean_c),
             };
-            for value in values {
-                let over = |bound: Option<f64>| bound.map_or(0.0, |b| value - b);
-                let under = |bound: Option<f64>| bound.map_or(0.0, |b| b - value);
-                let (low, high) = (rule.low_kept_c(), rule.high_kept_c());
-                outside = outside.max(over(high)).max(under(low));
-                let (down, up) = (rule.preferred_c.or(low), rule.preferred_c.or(high));
-                distance_c = distance_c.max(over(up)).max(under(down));
+            if let Ok(today) = &asked.today {
+                let low = today.low_c.filter(|low| today.base_c.is_none_or(|base| *low > base));
+                for (value, [lower, upper]) in values {
+                    let over = |bound: Option<f64>| bound.filter(|_| upper).map_or(0.0, |b| value - b);
+                    let under = |bound: Option<f64>| bound.filter(|_| lower).map_or(0.0, |b| b - value);
+                    if !wish {
+                        outside = outside.max(over(today.high_c)).max(under(low));
+                    }
+                    let (down, up) = (today.preferred_c.or(low), today.preferred_c.or(today.high_c));
+                    distance_c = distance_c.max(over(up)).max(under(down));
+                }
             }
-            let oxygen = match rule.statistic {
-                Statistic::DailyMean => self.mean_mg_l,
-                _ => self.oxygens.map(least),
+            let Some(air) = asked.air.filter(|_| !wish) else { continue };
+            let release = match air.figure {
+                OxygenFigure::Mean => self.mean_mg_l,
+                OxygenFigure::Min => self.oxygens.map(least),
             };
-            has_floor |= rule.oxygen_min_mg_l.is_some();
-            short = short.max(rule.oxygen_min_mg_l.zip(oxygen).map_or(0.0, |(floor, o)| floor - o));
+            let Some((found, full)) = afar.oxygen(asked.point, air.figure, mean_c, release) else { continue };
+            has_floor = true;
+            short = short.max(found.map_or(0.0, |o| air.floor_mg_l(full) - o));
         }
         let mut at_edge = false;
         let mut floor = |value: f64| {

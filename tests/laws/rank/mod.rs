@@ -1,5 +1,6 @@
 //! Laws of the ranking: against every mix tried one by one, and of its own.
 
+mod afar;
 mod brute;
 mod curves;
 mod dice;
@@ -7,6 +8,7 @@ mod laws;
 mod limits;
 mod mixes;
 mod parts;
+mod rivers;
 mod scenarios;
 mod sites;
 mod skips;

@@ -4,6 +4,7 @@ use std::cell::RefCell;
 use std::collections::HashMap;
 use std::rc::Rc;
 
+use super::afar::Afar;
 use gatemix::intake::{
     ASSUMED_LOSS, Entering, Port, Shaft, crest_flow_m3s, is_wet, leak_m3s, spills_by_itself,
 };
@@ -43,6 +44,7 @@ type Reaches = HashMap<(Place, u64), Rc<Vec<Check>>>;
 /// What is asked, with everything taken apart.
 pub(super) struct Works<'a> {
     pub(super) question: &'a Question<'a>,
+    pub(super) afar: Afar,
     /// Steps of the release; none where what spills by itself is all of it.
     pub(super) steps: usize,
     pub(super) groups: Vec<Vec<usize>>,
@@ -70,6 +72,7 @@ impl<'a> Works<'a> {
         let nothing = shared_out_m3s.iter().all(|flow| *flow <= 0.0);
         Self {
             question,
+            afar: Afar::of(question),
             groups,
             parts,
             shared_out_m3s,

@@ -24,6 +24,7 @@ fn before(outlets: Vec<RawOutlet>) -> Case {
         steps: 4,
         order: Criterion::NAMES.map(|c| c.1).to_vec(),
         without: Vec::new(),
+        recorded: None,
     }
 }
 

@@ -9,6 +9,7 @@ use proptest::prelude::*;
 
 use super::dice::Dice;
 use super::limits::limit;
+use super::rivers::{self, recorded};
 use crate::columns::{Pool, any_water, stable};
 use crate::mix::sites::{basin, cast, checked, day, port};
 
@@ -32,6 +33,8 @@ pub(super) struct Case {
     pub(super) steps: usize,
     pub(super) order: Vec<Criterion>,
     pub(super) without: Vec<usize>,
+    /// Of the record of the days before; none, and only the dam, without.
+    pub(super) recorded: Option<u64>,
 }
 
 /// A case checked.
@@ -46,7 +49,8 @@ impl Case {
     pub(super) fn dam(&self) -> Option<Dam> {
         let site = checked(&self.raw);
         let profile = Profile::build(&cast(&self.water), &site, None).0?;
-        Some(Dam { site, profile, day: day().into() })
+        let day = self.recorded.map_or_else(|| day().into(), |seed| recorded(&site, &self.water, seed));
+        Some(Dam { site, profile, day })
     }
 
     pub(super) fn question<'a>(&'a self, dam: &'a Dam) -> Question<'a> {
@@ -110,7 +114,11 @@ pub(super) fn case(seed: u64, limits: bool) -> Case {
     }
     let without = if dice.once_in(6) { vec![dice.below(count)] } else { Vec::new() };
     let steps = dice.one_of(&[4, 5, 6, 8, 10]);
-    Case { raw, water, blocks, now, before, steps, order, without }
+    let recorded = dice.once_in(2).then_some(seed);
+    if recorded.is_some() {
+        rivers::add(&mut raw, &water, dice);
+    }
+    Case { raw, water, blocks, now, before, steps, order, without, recorded }
 }
 
 fn well(name: &str, water: &Pool, dice: &mut Dice) -> RawWell {

@@ -1,5 +1,7 @@
 //! The days ahead, and when a change must leave the dam.
 
+use std::fmt::Write as _;
+
 use crate::problem::harmless;
 use crate::tasks::Context;
 use crate::tasks::river::{Arriving, RiverAnswer, Timely};
@@ -25,7 +27,7 @@ pub fn days(context: &Context, answer: &RiverAnswer, system: System) -> Vec<Stri
     let mut head = format!("{:<DATE$}{:<AIR$}", "leaves the dam", "air");
     for (i, _) in river.points.iter().enumerate() {
         for way in &answer.ways {
-            head.push_str(&format!("{:<FIGURE$}", format!("{} {}", i + 1, way.which.word())));
+            let _ = write!(head, "{:<FIGURE$}", format!("{} {}", i + 1, way.which.word()));
         }
     }
     let mut out = vec![head.trim_end().to_owned()];
@@ -35,7 +37,7 @@ pub fn days(context: &Context, answer: &RiverAnswer, system: System) -> Vec<Stri
         let mut line = format!("{:<DATE$}{air:<AIR$}", format!("{} {mark}", day.date.format("%m-%d")));
         for point in 0..river.points.len() {
             for way in 0..answer.ways.len() {
-                line.push_str(&format!("{:<FIGURE$}", figures(day, way, point, system)));
+                let _ = write!(line, "{:<FIGURE$}", figures(day, way, point, system));
             }
         }
         out.push(line.trim_end().to_owned());

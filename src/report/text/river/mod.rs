@@ -5,6 +5,8 @@ mod places;
 mod record;
 mod rules;
 
+use std::fmt::Write as _;
+
 use crate::problem::{Problem, harmless};
 use crate::tasks::Context;
 use crate::tasks::river::{RiverAnswer, Way, Which};
@@ -41,7 +43,7 @@ pub(super) fn body(context: &Context, answer: &RiverAnswer) -> String {
     out.push('\n');
     let mut recorded = String::from("Recorded\n");
     for (line, _) in record(context, answer, system, super::WIDTH - 2) {
-        recorded.push_str(&format!("  {line}\n"));
+        let _ = writeln!(recorded, "  {line}");
     }
     out.push_str(&recorded);
     out.push('\n');
@@ -76,8 +78,9 @@ fn table(rows: &[PlaceRow]) -> String {
     for first in (0..count).step_by(each) {
         for row in rows {
             let cells = row.cells.iter().skip(first).take(each);
-            let cells: String = cells.map(|c| format!("{:<CELL$}", super::fitted(c, CELL - 1))).collect();
-            out.push_str(format!("{:<LABEL$}{cells}", row.label).trim_end());
+            let cells: Vec<String> =
+                cells.map(|c| format!("{:<CELL$}", super::fitted(c, CELL - 1))).collect();
+            out.push_str(format!("{:<LABEL$}{}", row.label, cells.concat()).trim_end());
             out.push('\n');
         }
     }

@@ -39,6 +39,8 @@ pub struct RuleRow {
     pub governs: bool,
     /// Authority and source.
     pub source: String,
+    /// What an example is not.
+    pub example: Option<&'static str>,
 }
 
 /// The rules valid on the date, in the order of the site.
@@ -66,6 +68,7 @@ pub fn rules(context: &Context, answer: &RiverAnswer, system: System) -> Vec<Rul
             standings: answer.ways.iter().filter_map(of).collect(),
             governs: s.governs,
             source: source(rule),
+            example: rule.example.then_some(EXAMPLE),
         })
     };
     spoken.targets.iter().filter_map(row).collect()
@@ -85,9 +88,12 @@ pub(super) fn asks(rule: &Target, system: System) -> String {
 /// Its floor of oxygen.
 pub(super) fn floor(rule: &Target) -> String {
     let statistic = rule.oxygen_statistic().words();
+    let example = if rule.example { format!(", {EXAMPLE}") } else { String::new() };
     match (rule.oxygen_min_mg_l, rule.oxygen_min_share) {
-        (Some(least), _) => format!("{statistic} of oxygen at least {least:.1} mg/L"),
-        (None, Some(share)) => format!("{statistic} of oxygen at least {:.0} % of saturation", 100.0 * share),
+        (Some(least), _) => format!("{statistic} of oxygen at least {least:.1} mg/L{example}"),
+        (None, Some(share)) => {
+            format!("{statistic} of oxygen at least {:.0} % of saturation{example}", 100.0 * share)
+        }
         (None, None) => String::new(),
     }
 }
@@ -105,12 +111,9 @@ fn cells(rule: &Target, system: System) -> [(&'static str, Option<String>); 4] {
     ]
 }
 
-/// Who set a rule and where it is written; that it is an example.
+/// Who set a rule and where it is written.
 pub(super) fn source(rule: &Target) -> String {
     let mut parts = Vec::new();
-    if rule.example {
-        parts.push(EXAMPLE.to_owned());
-    }
     parts.extend(rule.authority.as_deref().map(|a| format!("set by {}", harmless(a))));
     parts.push(rule.source.as_deref().map_or_else(|| "no source given".to_owned(), harmless));
     format!("[{}]", parts.join("; "))

@@ -173,6 +173,8 @@ fn write(lines: &Lines, area: Rect, from: usize, model: &Model, buf: &mut Buffer
 fn say(lines: &mut Lines, text: &str, width: usize, indent: usize, role: Role) {
     let lead = text.len() - text.trim_start().len();
     let mut told = wrapped(text, width.saturating_sub(lead), indent.saturating_sub(lead));
-    told.iter_mut().for_each(|line| line.insert_str(0, &text[..lead]));
+    for line in &mut told {
+        line.insert_str(0, &text[..lead]);
+    }
     lines.extend(told.into_iter().map(|line| (line, role)));
 }

@@ -38,7 +38,7 @@ pub(super) fn lines(screen: &Screen, width: usize, height: usize) -> Lines {
     if screen.old {
         out.push(("from before; the new is being computed".to_owned(), Role::Old));
     }
-    let gaps = rows.len() + below.len() + answer.ways.len() + 1 <= height;
+    let gaps = rows.len() + below.len() + answer.ways.len() < height;
     let (label, cells) = columns(&rows, width);
     let mut before = None;
     for row in &rows {
@@ -46,7 +46,9 @@ pub(super) fn lines(screen: &Screen, width: usize, height: usize) -> Lines {
             out.push((String::new(), Role::Plain));
         }
         before = row.of;
-        let text: String = row.cells.iter().map(|c| format!("{:<cells$}", cut(c, cells - GAP))).collect();
+        let text: Vec<String> =
+            row.cells.iter().map(|c| format!("{:<cells$}", cut(c, cells - GAP))).collect();
+        let text = text.concat();
         let (letter, role) = row.of.map_or((None, Role::Quiet), |w| (Some(mark(w).0), mark(w).1));
         let role = if row.short.is_empty() { Role::Strong } else { role };
         let name = letter.map_or_else(|| row.short.clone(), |l| format!("{l} {}", row.short));

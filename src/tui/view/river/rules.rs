@@ -59,7 +59,8 @@ fn typed(screen: &Screen, at: usize, row: &RuleRow) -> String {
         let value = value.as_deref().unwrap_or("none");
         if i == screen.session.river.column { format!("[{name} {value}]") } else { format!("{name} {value}") }
     });
-    format!("{}, {}", row.statistic, cells.collect::<Vec<_>>().join(" "))
+    let example = row.example.map_or_else(String::new, |words| format!(", {words}"));
+    format!("{}, {}{example}", row.statistic, cells.collect::<Vec<_>>().join(" "))
 }
 
 pub(super) fn lines(screen: &Screen, width: usize) -> Lines {

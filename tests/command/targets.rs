@@ -1,0 +1,135 @@
+//! Rules at the dam and at a point in the river, as a user meets them.
+
+use approx::assert_abs_diff_eq;
+use serde_json::Value;
+
+use crate::{CAST, Folder, SITE, run, with};
+
+/// A river with a given equilibrium and exchange, and rules of several kinds.
+fn ruled(rules: &str) -> Folder {
+    let river = "river: { name: Test River, equilibrium: 22, exchange_w_m2_c: 30, reaches: [ { name: Upper, length_km: 20, width: 40, depth: 1.5, travel_hours: [[20, 9], [60, 5]] } ], points: [ { name: Mill Bridge, at_km: 20 } ] }
+pool:";
+    let site = with(&with(SITE, "pool:", river), "targets:\n", &format!("targets:\n{rules}"));
+    Folder::new(&site, &[("2025-07-14.csv", CAST.as_bytes())])
+}
+
+fn number(value: &Value) -> f64 {
+    value.as_f64().unwrap()
+}
+
+fn target<'a>(answer: &'a Value, name: &str) -> &'a Value {
+    answer["targets"].as_array().unwrap().iter().find(|t| t["name"] == name).unwrap()
+}
+
+/// Nine hours at 20 m3/s: 22 + (T - 22) exp(-30 x 9 x 3600 / (4.18e6 x 1.5)), a closed form.
+#[test]
+fn scenario_a_rule_at_a_point_is_held_against_what_arrives_there() {
+    let folder = ruled(
+        "  - { name: bridge, point: Mill Bridge, high: 14, oxygen_min_percent: 99 }
+  - { name: cooling, point: Mill Bridge, reference: natural, high: -10 }
+  - { name: maxima, point: Mill Bridge, statistic: 7dadm, high: 16 }\n",
+    );
+    let answer = run(&["mix", folder.named(), "--set", "N1=15", "--set", "Sluice=5", "--json"]).json();
+    let release = number(&answer["release"]["temperature_c"]);
+    let expected = 22.0 + (release - 22.0) * (-30.0 * 9.0 * 3600.0 / (4.18e6_f64 * 1.5)).exp();
+    let bridge = target(&answer, "bridge");
+    assert_abs_diff_eq!(number(&bridge["value_c"]), expected, epsilon = 0.02);
+    assert!(number(&bridge["value_c"]) > release + 0.5);
+    assert_eq!((&bridge["point"], &bridge["basis"]), (&"Mill Bridge".into(), &"steady".into()));
+    assert_eq!(bridge["standing"], "above");
+    assert_abs_diff_eq!(number(&bridge["by_c"]), expected - 14.0, epsilon = 0.02);
+    assert_eq!(bridge["oxygen_standing"], "below");
+    assert!(number(&bridge["oxygen_percent"]) < 99.0);
+    assert!(number(&bridge["share_inside"]) < 0.5);
+    let cooling = target(&answer, "cooling");
+    assert_eq!(cooling["reference"], "natural");
+    assert_abs_diff_eq!(number(&cooling["value_c"]), expected - 22.0, epsilon = 0.02);
+    assert_abs_diff_eq!(number(&cooling["today_high_c"]), 12.0, epsilon = 1e-9);
+    // the greatest of a day is not known where the river is computed by days
+    let maxima = target(&answer, "maxima");
+    assert_eq!((&maxima["standing"], &maxima["value_c"]), (&"unknown".into(), &Value::Null));
+    assert!(maxima["words"].as_str().unwrap().contains("by the hour"));
+    let points = answer["points"].as_array().unwrap();
+    assert_eq!((points.len(), &points[0]["name"]), (1, &"Mill Bridge".into()));
+    assert_abs_diff_eq!(number(&points[0]["travel_h"]), 9.0, epsilon = 1e-6);
+    assert_abs_diff_eq!(number(&points[0]["temperature_c"]), number(&bridge["value_c"]), epsilon = 1e-12);
+}
+
+#[test]
+fn scenario_rules_that_leave_nothing_in_common_are_a_conflict() {
+    let folder = ruled(
+        "  - { name: eggs, high: 8 }
+  - { name: mussels, point: Mill Bridge, low: 15, priority: 2 }
+  - { name: anglers, high: 5, soft: true }\n",
+    );
+    let set = ["mix", folder.named(), "--set", "N1=15", "--set", "Sluice=5"];
+    let answer = run(&[&set[..], &["--json"]].concat()).json();
+    let conflicts: Vec<&Value> =
+        answer["conflicts"].as_array().unwrap().iter().map(|c| &c["targets"]).collect();
+    // 8 at most, 9 at least at the dam; 15 at the bridge takes 13.8 at the dam; a wish conflicts with nothing
+    assert_eq!(conflicts, [&serde_json::json!(["eggs", "mussels"]), &serde_json::json!(["eggs", "holding"])]);
+    let told = answer["warnings"].as_array().unwrap().iter().filter(|w| w["kind"] == "conflict");
+    let texts: Vec<&str> = told.map(|w| w["text"].as_str().unwrap()).collect();
+    assert!(
+        texts.iter().any(|t| t.contains("`eggs` and `holding` leave no temperature at the dam in common"))
+    );
+    assert!(texts.iter().any(|t| t.contains("`eggs` and `mussels` leave no temperature of the release")));
+    let mussels = target(&answer, "mussels");
+    assert_eq!((&mussels["held_as_wish"], &mussels["soft"]), (&true.into(), &false.into()));
+    assert_eq!(target(&answer, "eggs")["governs"], true);
+    let text = run(&set).out;
+    assert!(text.contains("held as a wish"), "{text}");
+}
+
+#[test]
+fn scenario_a_wish_is_never_missed() {
+    let wish = ["  - { name: anglers, high: 5, soft: true }\n", "  - { name: anglers, high: 5 }\n"];
+    let codes = wish.map(|rule| {
+        let folder = ruled(rule);
+        // 12 C of the deeper gate and the sluice keeps `holding` in temperature; its oxygen is another matter
+        let site = std::fs::read_to_string(folder.site_file()).unwrap();
+        std::fs::write(folder.site_file(), with(&with(&site, ", oxygen_min: 7", ""), "low: 9", "low: 2"))
+            .unwrap();
+        run(&["mix", folder.named(), "--set", "N1=15", "--set", "Sluice=5", "--strict"]).code
+    });
+    assert_eq!(codes, [Some(0), Some(4)]);
+}
+
+#[test]
+fn scenario_every_output_says_that_values_are_an_example() {
+    let folder = ruled("  - { name: licence, high: 14, example: false, source: \"site licence\" }\n");
+    let words = "example values, not your licence's";
+    for task in ["mix", "rank"] {
+        let mut arguments = vec![task, folder.named()];
+        arguments.extend(if task == "rank" { vec!["--release", "30"] } else { vec!["--set", "N1=15"] });
+        let joined = run(&arguments).out.split_whitespace().collect::<Vec<_>>().join(" ");
+        assert!(joined.contains(words), "{task}: {joined}");
+        arguments.push("--json");
+        let answer = run(&arguments).json();
+        let answer = if task == "rank" { answer["mixes"][0].clone() } else { answer };
+        let [holding, licence] = ["holding", "licence"].map(|name| target(&answer, name));
+        assert_eq!((&holding["example"], &holding["example_words"]), (&true.into(), &words.into()));
+        assert_eq!((&licence["example"], &licence["example_words"]), (&false.into(), &Value::Null));
+    }
+}
+
+/// The ranking orders by what arrives at the bridge: with a rule there alone, its first mix comes nearest to it.
+#[test]
+fn scenario_rank_lists_the_points_and_orders_by_them() {
+    let folder = ruled("  - { name: bridge, point: Mill Bridge, low: 12, preferred: 13, high: 14 }\n");
+    let site = std::fs::read_to_string(folder.site_file()).unwrap();
+    let holding = site.lines().find(|l| l.contains("name: holding")).unwrap().to_owned() + "\n";
+    std::fs::write(folder.site_file(), with(&site, &holding, "")).unwrap();
+    let answer = run(&["rank", folder.named(), "--release", "40", "--step", "5%", "--json"]).json();
+    let first = &answer["mixes"][0];
+    let bridge = target(first, "bridge");
+    assert_eq!(bridge["standing"], "inside");
+    assert_abs_diff_eq!(number(&bridge["value_c"]), 13.0, epsilon = 0.5 + 0.05);
+    assert!(number(&first["release"]["temperature_c"]) < number(&bridge["value_c"]));
+    assert_eq!(first["points"][0]["name"], "Mill Bridge");
+    assert_abs_diff_eq!(
+        number(&first["points"][0]["temperature_c"]),
+        number(&bridge["value_c"]),
+        epsilon = 1e-9
+    );
+}
