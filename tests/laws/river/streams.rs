@@ -108,3 +108,22 @@ fn scenario_odd_rivers_give_figures() {
         }
     }
 }
+
+/// A point where two reaches meet sees the stream that joins just there, in whichever of both it is listed.
+#[test]
+fn scenario_a_point_at_a_junction_sees_the_mixed_water() {
+    let creek = "inflows: [ { name: s, at_km: 10, flow: 20, temperature: 20, oxygen: 8 } ],";
+    for (upper, lower) in [(creek, ""), ("", creek)] {
+        let site = dam(&format!(
+            "{{ equilibrium: 10, exchange_w_m2_c: 1.0e-9, reaches: [
+               {{ name: a, length_km: 10, width: 40, depth: 1, {upper} travel_hours: [[20, 8]] }},
+               {{ name: b, length_km: 10, width: 40, depth: 1, {lower} travel_hours: [[40, 8]] }} ],
+               points: [ {{ name: above, at_km: 9.999 }}, {{ name: at, at_km: 10 }}, {{ name: end, at_km: 20 }} ] }}"
+        ));
+        let course = course(&site, &Conditions::default(), day(), &[part(24.0, 20.0, 10.0, 8.0)]).unwrap();
+        let seen: Vec<f64> = course.points.iter().map(|p| p.figures.mean_c).collect();
+        assert_abs_diff_eq!(seen[..], [10.0, 15.0, 15.0][..], epsilon = 1e-6);
+        let hours: Vec<f64> = course.points.iter().map(|p| p.travel_h).collect();
+        assert_abs_diff_eq!(hours[..], [7.9992, 8.0, 16.0][..], epsilon = 1e-9);
+    }
+}
