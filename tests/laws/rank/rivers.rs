@@ -49,7 +49,7 @@ pub(super) fn add(raw: &mut Raw, water: &Pool, dice: &mut Dice) {
         ..RawRiver::default()
     });
     let with_stream = raw.river.as_ref().is_some_and(|r| !r.reaches[0].inflows.is_empty());
-    raw.targets.extend((0..1 + dice.below(4)).map(|i| target(i, water, with_stream, dice)));
+    raw.targets.extend((0..=dice.below(4)).map(|i| target(i, water, with_stream, dice)));
 }
 
 fn target(i: usize, water: &Pool, with_stream: bool, dice: &mut Dice) -> RawTarget {
