@@ -34,7 +34,7 @@ pub struct RuleRow {
     pub point: String,
     /// What its range is of; empty where it sets none.
     pub statistic: String,
-    /// Statistic and range in words.
+    /// Statistic and range in words, and what the standing rests on.
     pub asks: String,
     /// Low, preferred, high and oxygen, each with its value in the unit shown.
     pub cells: [(&'static str, Option<String>); 4],
@@ -58,10 +58,11 @@ pub fn rules(context: &Context, answer: &RiverAnswer, system: System) -> Vec<Rul
             let s = way.targets.iter().find(|t| t.target == s.target)?;
             let value = value_words(s, rule, system).map_or_else(String::new, |v| format!("{v}, "));
             let why = s.words.as_deref().map_or_else(String::new, |w| format!(" ({})", in_system(w, system)));
+            let wish = if s.wish && !rule.soft { "; held as a wish" } else { "" };
             Some(RuleStanding {
                 of: way.which,
                 short: short(s, rule, system),
-                words: format!("{}: {value}{}{why}", way.which.word(), standing_words(s, rule, system)),
+                words: format!("{}: {value}{}{why}{wish}", way.which.word(), standing_words(s, rule, system)),
                 missed: s.missed(),
             })
         };
@@ -70,7 +71,7 @@ pub fn rules(context: &Context, answer: &RiverAnswer, system: System) -> Vec<Rul
             name: harmless(&rule.name),
             point: harmless(&rule.point),
             statistic: statistic(rule, system),
-            asks: asks(rule, system),
+            asks: format!("{}; {}", asks(rule, system), s.basis.words()),
             cells: cells(rule, system),
             standings: answer.ways.iter().filter_map(of).collect(),
             governs: s.governs,
