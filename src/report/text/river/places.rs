@@ -24,6 +24,9 @@ pub struct PlaceRow {
     pub cells: Vec<String>,
 }
 
+/// Oxygen that would be shown as none, mg/L (half of the digit shown).
+const LEAST_SHOWN_MG_L: f64 = 0.05;
+
 /// Where nothing is to be told.
 const NONE: &str = "-";
 
@@ -123,7 +126,9 @@ pub fn window_words(window: &Window, system: System) -> String {
         parts.push("OUT OF REACH: no release keeps its range".to_owned());
     }
     if let Some(least) = window.oxygen_min_mg_l {
-        parts.push(format!("oxygen from {least:.1} mg/L"));
+        // a release without any oxygen would do: the river makes it good on its way
+        let any = least < LEAST_SHOWN_MG_L;
+        parts.push(if any { "any oxygen".to_owned() } else { format!("oxygen from {least:.1} mg/L") });
     }
     parts.extend(window.unknown.iter().map(|words| harmless(words)));
     if parts.is_empty() { "nothing is asked".to_owned() } else { parts.join(", ") }

@@ -7,7 +7,7 @@ use crate::tasks::Context;
 use crate::tasks::river::{RiverAnswer, Way};
 use crate::units::{Dimension, System, figure, in_system};
 
-use super::super::targets::{EXAMPLE, range, standing_words, value_words};
+use super::super::targets::{EXAMPLE, HELD_AS_WISH, range, standing_words, value_words};
 
 /// How one release stands against a rule.
 #[derive(Debug, Clone, PartialEq)]
@@ -58,12 +58,13 @@ pub fn rules(context: &Context, answer: &RiverAnswer, system: System) -> Vec<Rul
                 missed: s.missed(),
             })
         };
+        let wish = if s.wish && !rule.soft { format!(", {HELD_AS_WISH}") } else { String::new() };
         Some(RuleRow {
             target: s.target,
             name: harmless(&rule.name),
             point: harmless(&rule.point),
             statistic: in_system(&rule.statistic.words(), system),
-            asks: asks(rule, system),
+            asks: format!("{}{wish}", asks(rule, system)),
             cells: cells(rule, system),
             standings: answer.ways.iter().filter_map(of).collect(),
             governs: s.governs,
