@@ -1,4 +1,6 @@
 //! The days ahead: what arrives if a release is held, and when a change must leave the dam to be in time.
+//!
+//! Methods: `docs/methods.md`, section 6.
 
 use chrono::{DateTime, FixedOffset, NaiveDate, TimeDelta};
 

@@ -1,4 +1,6 @@
 //! The release each point would need for its rules today.
+//!
+//! Methods: `docs/methods.md`, section 6.
 
 use crate::mix::RuleToday;
 use crate::river::{self, Floor, Part, RELEASES_C, Wanted, course, least_oxygen};
@@ -7,7 +9,7 @@ use crate::tasks::Context;
 
 use super::Way;
 
-/// Ends of a window that cross by less still meet, C: round-off of a root.
+/// Ends of a window that cross by less still meet, C (choice: round-off of a root).
 const NEAR_C: f64 = 1e-6;
 
 /// The release that keeps a point inside its rules today, as far as one does.

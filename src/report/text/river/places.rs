@@ -27,6 +27,9 @@ pub struct PlaceRow {
 /// A change of stage smaller than this is none, m: the figure shown would be zero (choice).
 const SAME_STAGE_M: f64 = 0.05;
 
+/// Oxygen that would be shown as none, mg/L (half of the digit shown).
+const LEAST_SHOWN_MG_L: f64 = 0.05;
+
 /// Where nothing is to be told.
 const NONE: &str = "-";
 
@@ -128,7 +131,7 @@ pub fn window_words(window: &Window, system: System) -> String {
         parts.push("OUT OF REACH: no release keeps its rules".to_owned());
     }
     match window.oxygen_min_mg_l {
-        Some(least) if least < 0.05 => parts.push("any oxygen".to_owned()),
+        Some(least) if least < LEAST_SHOWN_MG_L => parts.push("any oxygen".to_owned()),
         Some(least) => {
             let above = window.saturation_mg_l.is_some_and(|s| least > s);
             let words = if above { ", above saturation there" } else { "" };

@@ -8,7 +8,7 @@ use crate::tasks::river::{RiverAnswer, Way, Which};
 use crate::units::{Dimension, System, figure, in_system};
 
 use super::super::mix::missed;
-use super::super::targets::{EXAMPLE, range, standing_words, value_words};
+use super::super::targets::{EXAMPLE, HELD_AS_WISH, range, standing_words, value_words};
 
 /// How one release stands against a rule.
 #[derive(Debug, Clone, PartialEq)]
@@ -58,20 +58,20 @@ pub fn rules(context: &Context, answer: &RiverAnswer, system: System) -> Vec<Rul
             let s = way.targets.iter().find(|t| t.target == s.target)?;
             let value = value_words(s, rule, system).map_or_else(String::new, |v| format!("{v}, "));
             let why = s.words.as_deref().map_or_else(String::new, |w| format!(" ({})", in_system(w, system)));
-            let wish = if s.wish && !rule.soft { "; held as a wish" } else { "" };
             Some(RuleStanding {
                 of: way.which,
                 short: short(s, rule, system),
-                words: format!("{}: {value}{}{why}{wish}", way.which.word(), standing_words(s, rule, system)),
+                words: format!("{}: {value}{}{why}", way.which.word(), standing_words(s, rule, system)),
                 missed: s.missed(),
             })
         };
+        let wish = if s.wish && !rule.soft { format!(", {HELD_AS_WISH}") } else { String::new() };
         Some(RuleRow {
             target: s.target,
             name: harmless(&rule.name),
             point: harmless(&rule.point),
             statistic: statistic(rule, system),
-            asks: format!("{}; {}", asks(rule, system), s.basis.words()),
+            asks: format!("{}{wish}; {}", asks(rule, system), s.basis.words()),
             cells: cells(rule, system),
             standings: answer.ways.iter().filter_map(of).collect(),
             governs: s.governs,
