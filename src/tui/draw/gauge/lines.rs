@@ -123,7 +123,9 @@ impl Row {
     fn said(&self, gauge: &Gauge, columns: Columns, named: bool) -> (String, String) {
         let [full, short] = &self.label;
         let label = match self.bar {
-            Bar::Range(i) if !named => gauge.targets.get(i).map_or(full, |held| &held.name),
+            Bar::Range(i) if !named => {
+                gauge.targets.get(i).map_or(full, |held| held.point.as_ref().unwrap_or(&held.name))
+            }
             _ if columns.label < full.width() && !columns.stacked => short,
             _ => full,
         };
@@ -236,7 +238,9 @@ impl Gauge {
         let mut out = vec![held.name.clone()];
         out.extend(held.governs.then(|| "governs".to_owned()));
         let apart = |v: &f64| self.tried.value.is_some_and(|t| self.figure(t) != self.figure(*v));
-        out.extend(held.value.filter(apart).map(|v| format!("{} {}", held.statistic, with_unit(v))));
+        let (there, elsewhere) = (if held.point.is_some() { " there" } else { "" }, held.point.is_some());
+        let told = held.value.filter(|v| elsewhere || apart(v));
+        out.extend(told.map(|v| format!("{}{there} {}", held.statistic, with_unit(v))));
         let percent = |share: f64| format!("{:.0} %", 100.0 * share);
         out.extend(held.share.map(|s| format!("{} of cases inside", percent(s))));
         out.extend(held.share_both.map(|s| format!("{} in oxygen too", percent(s))));
@@ -255,7 +259,11 @@ impl Gauge {
     }
 
     fn range(&self, index: usize, held: &Held) -> Row {
-        let label = if held.high.is_none() { ["at least", "least"] } else { ["range", "range"] };
+        let label = match (&held.point, held.high) {
+            (Some(_), _) => ["there", "there"],
+            (None, None) => ["at least", "least"],
+            (None, Some(_)) => ["range", "range"],
+        };
         let (words, words_role) = match (held.standing, held.by) {
             (Standing::Unknown, _) => (["UNKNOWN".to_owned(), "UNKNOWN".to_owned()], Role::Warn),
             (standing, Some(by)) if by > 0.0 => {
