@@ -10,7 +10,7 @@ use crate::units::say;
 use super::day::RuleToday;
 use super::links::Links;
 
-/// Ranges that overlap or touch within this leave something in common, C: round-off.
+/// Ranges that overlap or touch within this leave something in common, C (choice: round-off).
 const ROUND_OFF_C: f64 = 1e-6;
 
 /// Two rules valid on one day that leave no release temperature in common.

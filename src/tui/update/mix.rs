@@ -330,7 +330,7 @@ fn put_into(model: &mut Model, cell: Cell, value: &Value) -> Vec<Effect> {
                         Cell::Low(_) => target.low_c = number,
                         Cell::Preferred(_) => target.preferred_c = number,
                         Cell::High(_) => target.high_c = number,
-                        _ => target.oxygen_min_mg_l = number,
+                        _ => (target.oxygen_min_mg_l, target.oxygen_min_share) = (number, None),
                     }
                 }
                 draft.changed.targets = Some(targets).filter(|t| *t != site.targets);

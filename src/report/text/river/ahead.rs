@@ -66,8 +66,8 @@ pub fn timely_words(context: &Context, answer: &RiverAnswer, system: System) -> 
         let days = if t.days == 1 { "1 day".to_owned() } else { format!("{} days", t.days) };
         let late = if t.late { ", which is past" } else { "" };
         Some(format!(
-            "{}: held, it is above `{}` for {days} from {} ({} over by {}): a change must leave the dam by {}{late}; \
-             its water takes {:.1} h, its rise is there from {:.1} h, in bulk {:.1} h",
+            "{}: if this release is held, `{}` is missed for {days} from {} ({}, {} more than it leaves); a change must \
+             leave the dam by {}{late}: its water takes {:.1} h, its rise can be there after {:.1} h, in bulk after {:.1} h",
             harmless(&point.name),
             harmless(&rule.name),
             t.day.format("%m-%d"),

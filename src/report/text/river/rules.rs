@@ -32,7 +32,7 @@ pub struct RuleRow {
     pub name: String,
     /// Where it applies.
     pub point: String,
-    /// Its statistic.
+    /// What its range is of; empty where it sets none.
     pub statistic: String,
     /// Statistic and range in words.
     pub asks: String,
@@ -69,7 +69,7 @@ pub fn rules(context: &Context, answer: &RiverAnswer, system: System) -> Vec<Rul
             target: s.target,
             name: harmless(&rule.name),
             point: harmless(&rule.point),
-            statistic: in_system(&rule.statistic.words(), system),
+            statistic: statistic(rule, system),
             asks: asks(rule, system),
             cells: cells(rule, system),
             standings: answer.ways.iter().filter_map(of).collect(),
@@ -106,7 +106,13 @@ fn short(s: &TargetStanding, rule: &Target, system: System) -> String {
 
 /// What a rule asks, with its statistic.
 pub(super) fn asks(rule: &Target, system: System) -> String {
-    format!("{}, {}", in_system(&rule.statistic.words(), system), range(rule, system))
+    let statistic = statistic(rule, system);
+    if statistic.is_empty() { range(rule, system) } else { format!("{statistic}, {}", range(rule, system)) }
+}
+
+/// What its range is of; empty where it sets none, since a floor names its own.
+fn statistic(rule: &Target, system: System) -> String {
+    if rule.has_range() { in_system(&rule.statistic.words(), system) } else { String::new() }
 }
 
 /// Its floor of oxygen.

@@ -5,8 +5,9 @@
 //! asks, and the release that would give it        | when water arrives, what it is
 //! oxygen along the river                          | the release each point would need
 //! ------------------------------------------------+--------------------------------------
-//! rules with their standings, or day by day, or what was recorded
+//! rules with their standings, or day by day
 //! ```
+//! What was recorded takes the place of all of it.
 
 mod days;
 mod picture;
@@ -51,6 +52,11 @@ struct Parts {
 }
 
 fn parts(screen: &Screen, area: Rect) -> Parts {
+    if screen.session.river.page == RiverPage::Record {
+        // the calendars are a picture of their own
+        let none = Rect { width: 0, height: 0, ..area };
+        return Parts { warmth: none, oxygen: none, places: none, below: area };
+    }
     let right = PLACES.max(area.width / 5 * 2).min(area.width / 2);
     let left = area.width - right - 1;
     let above = (area.height * 3 / 5).min(area.height.saturating_sub(BELOW));
@@ -73,7 +79,9 @@ pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffe
     };
     let parts = parts(&screen, area);
     let [warmth, oxygen] = picture::pictures(&screen, parts.oxygen.height == 0);
-    along(&warmth, parts.warmth, buf, model.look);
+    if parts.warmth.height > 0 {
+        along(&warmth, parts.warmth, buf, model.look);
+    }
     if parts.oxygen.height > 0 {
         along(&oxygen, parts.oxygen, buf, model.look);
     }

@@ -40,7 +40,8 @@ fn told(screen: &Screen, width: usize) -> Vec<(Option<usize>, String, Role)> {
             stands.collect::<Vec<_>>().join("; ")
         );
         let missed = row.standings.iter().any(|s| s.missed);
-        add(Some(i), &head, 4, if missed { Role::Outside } else { Role::Strong });
+        // the row chosen is reversed, and reversed colours would part it
+        add(Some(i), &head, 4, if missed && !chosen { Role::Outside } else { Role::Strong });
         add(Some(i), &format!("    {} {}", typed(screen, i, row), row.source), 6, Role::Quiet);
         for standing in row.standings.iter().filter(|_| chosen) {
             let role = if standing.missed { Role::Outside } else { Role::Plain };
@@ -68,7 +69,8 @@ fn typed(screen: &Screen, at: usize, row: &RuleRow) -> String {
         if i == screen.session.river.column { format!("[{name} {value}]") } else { format!("{name} {value}") }
     });
     let example = row.example.map_or_else(String::new, |words| format!(", {words}"));
-    format!("{}, {}{example}", row.statistic, cells.collect::<Vec<_>>().join(" "))
+    let statistic = if row.statistic.is_empty() { String::new() } else { format!("{}, ", row.statistic) };
+    format!("{statistic}{}{example}", cells.collect::<Vec<_>>().join(" "))
 }
 
 pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
