@@ -119,7 +119,7 @@ pub(crate) fn scenes() -> Vec<Scene> {
             let mut driver = Driver::open(Some(&river("river-stale", &[])), NORMAL);
             driver.keys("4");
             driver.held = true;
-            driver.keys("Down + +");
+            driver.keys("Down Right Right - -");
             for lane in [Lane::Quick, Lane::Long] {
                 let question = driver.question(lane).unwrap();
                 driver.answer(question);
@@ -135,10 +135,10 @@ fn pressed(driver: &mut Driver, column: u16, row: u16) {
     driver.settle();
 }
 
-/// Column and row of the first line that holds a text.
+/// Column and row of the last line that holds a text.
 fn place(driver: &Driver, piece: &str) -> (u16, u16) {
     let text = driver.text();
-    let found = text.lines().zip(0..).find_map(|(line, row)| Some((line.find(piece)?, line, row)));
+    let found = text.lines().zip(0..).filter_map(|(line, row)| Some((line.find(piece)?, line, row))).last();
     let (at, line, row) = found.unwrap_or_else(|| panic!("`{piece}` is not in\n{text}"));
     (u16::try_from(line[..at].chars().count()).unwrap(), row)
 }
@@ -149,14 +149,14 @@ fn scenario_the_mouse_chooses_a_rule_and_the_first_rule_of_a_point() {
     driver.keys("4");
     let (column, row) = place(&driver, "2 Long Ford");
     pressed(&mut driver, column + 3, row);
-    assert_eq!(driver.session().river.rule, 2, "{}", driver.text());
-    let (column, row) = place(&driver, "bridge at Mill Bridge");
+    assert_eq!(driver.session().river.rule, 1, "{}", driver.text());
+    let (column, row) = place(&driver, "bridge at Mill Bridge:");
     pressed(&mut driver, column, row);
-    assert_eq!((driver.session().river.rule, driver.model.over.is_none()), (1, true), "{}", driver.text());
+    assert_eq!((driver.session().river.rule, driver.model.over.is_none()), (0, true), "{}", driver.text());
     // pressed again it is typed into
     pressed(&mut driver, column, row);
     let Some(Over::Field(field)) = &driver.model.over else { panic!("{}", driver.text()) };
-    assert_eq!(field.typed, Typed::Cell(Cell::Low(1)));
+    assert_eq!(field.typed, Typed::Cell(Cell::Low(0)));
 }
 
 #[test]
@@ -166,21 +166,21 @@ fn scenario_a_rule_of_a_difference_is_typed_and_turned_as_one() {
     let likes = Likes { units: Some(System::Us), ..Likes::default() };
     let asked = gatemix::tasks::Asked { site: Some(named), ..Default::default() };
     let mut driver = Driver::asked(asked, likes, WIDE);
-    driver.keys("4 Down Down Down Right Right Enter");
+    driver.keys("4 Down Down Right Right Enter");
     let Some(Over::Field(field)) = &driver.model.over else { panic!("{}", driver.text()) };
     // 2 C more are 3.6 F more, not 35.6 F
     assert_eq!(field.input.value(), "3.6", "{}", driver.text());
     driver.keys("Esc +");
-    let high_c = |d: &Driver| d.session().context().site().targets[3].high_c.unwrap();
+    let high_c = |d: &Driver| d.session().context().site().targets[2].high_c.unwrap();
     assert!((high_c(&driver) - 4.0 / 1.8).abs() < 1e-9, "{}", high_c(&driver));
 }
 
 #[test]
 fn scenario_what_is_typed_on_the_river_screen_is_on_the_mix_screen_too_and_taken_back() {
     let mut driver = Driver::open(Some(&river("river-typed", &[])), WIDE);
-    driver.keys("4 Down Right Right Enter");
+    driver.keys("4 Right Right Enter");
     driver.typed("11.5").keys("Enter");
-    let high = |d: &Driver| d.session().context().site().targets[1].high_c;
+    let high = |d: &Driver| d.session().context().site().targets[0].high_c;
     assert_eq!(high(&driver), Some(11.5));
     assert!(driver.text().contains("[high 11.5 C]"), "{}", driver.text());
     assert!(driver.keys("2").text().contains("high 11.5"), "{}", driver.text());
@@ -217,20 +217,29 @@ fn scenario_pages_of_the_river_screen_lead_there_and_back() {
     assert_eq!(driver.session().river.scroll, last);
     assert!(seen.contains("mean of minima (from memory)"), "{seen}");
     assert!(driver.text().contains("the end, PgUp"), "{}", driver.text());
+    // the rules scroll away from the one chosen, and back to it with it
+    driver.keys("v PgDn PgDn PgDn PgDn PgDn PgDn PgDn PgDn PgDn PgDn");
+    assert!(
+        driver.text().contains("the end, PgUp") && !driver.text().contains("> summer"),
+        "{}",
+        driver.text()
+    );
+    driver.keys("Down Up");
+    assert!(driver.text().contains("> summer"), "{}", driver.text());
 }
 
 #[test]
 fn scenario_an_answer_of_before_says_so_and_is_not_copied() {
     let mut driver = Driver::open(Some(&river("river-before", &[])), WIDE);
-    driver.keys("4 y");
+    driver.keys("4").keys("y");
     assert_eq!(driver.copied.len(), 1);
     assert!(driver.copied[0].contains("Release needed today"), "{}", driver.copied[0]);
-    assert!(!driver.text().contains("from before"), "{}", driver.text());
+    assert!(!driver.text().contains("FROM BEFORE"), "{}", driver.text());
     driver.held = true;
-    driver.keys("Down + y");
-    assert!(driver.text().contains("from before"), "{}", driver.text());
+    driver.keys("Right Right - y");
+    assert!(driver.text().contains("FROM BEFORE"), "{}", driver.text());
     assert_eq!(driver.copied.len(), 1);
     driver.held = false;
     driver.settle();
-    assert!(!driver.text().contains("from before"), "{}", driver.text());
+    assert!(!driver.text().contains("FROM BEFORE"), "{}", driver.text());
 }

@@ -28,6 +28,8 @@ pub struct Window {
     pub oxygen_min_mg_l: Option<f64>,
     /// The rule that sets it.
     pub oxygen_set_by: Option<usize>,
+    /// Whether a rule asks for a temperature there today.
+    pub of_temperature: bool,
     /// What the point asks of its own temperature today, C, all its rules together.
     pub asked_c: [Option<f64>; 2],
     /// Its floor, mg/L.
@@ -62,6 +64,7 @@ fn window(context: &Context, way: &Way, point: Option<usize>, rules: &[&RuleToda
         reachable: true,
         oxygen_min_mg_l: None,
         oxygen_set_by: None,
+        of_temperature: rules.iter().any(|r| r.today.as_ref().is_ok_and(bounds)),
         asked_c: [None, None],
         floor_mg_l: None,
         unknown: Vec::new(),
@@ -82,6 +85,11 @@ fn window(context: &Context, way: &Way, point: Option<usize>, rules: &[&RuleToda
     }
     out.unknown.dedup();
     out
+}
+
+/// Whether it bounds the temperature.
+fn bounds(today: &Today) -> bool {
+    today.low_c.is_some() || today.high_c.is_some()
 }
 
 impl Window {

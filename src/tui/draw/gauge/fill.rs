@@ -3,7 +3,7 @@
 use crate::mix::{Mix, Spread, TargetStanding};
 use crate::problem::harmless;
 use crate::site::Site;
-use crate::target::{Basis, DAM, Target};
+use crate::target::{Basis, DAM, Standing, Target};
 use crate::tasks::rank::Shown;
 use crate::units::{Dimension, System, in_system};
 
@@ -50,7 +50,8 @@ impl Release<'_> {
     fn held(self, site: &Site, of: impl Fn(&TargetStanding, &Target) -> Option<Held>) -> Vec<Held> {
         let mut held: Vec<Held> =
             self.targets.iter().filter_map(|s| of(s, site.targets.get(s.target)?)).collect();
-        held.sort_by_key(|h| !h.governs);
+        let missed = |h: &Held| matches!(h.standing, Standing::Above | Standing::Below);
+        held.sort_by_key(|h| (!h.governs, !missed(h), h.point.is_some()));
         held
     }
 }

@@ -19,7 +19,7 @@ use super::{Attainable, Gauge, Held, Reading};
 const BAR_BESIDE: usize = 20;
 const BAR_SHORT: usize = 8;
 /// From this worth on a line is detail, for which nothing else is left out.
-const DETAIL: u8 = 9;
+const DETAIL: u8 = 11;
 
 struct Line {
     /// 0 stays longest.
@@ -180,12 +180,21 @@ fn lines(gauge: &Gauge, width: usize) -> Vec<Line> {
     }
     for (i, held) in gauge.targets.iter().enumerate() {
         let first = i == 0;
+        // what stands now is told before a rule down the river that is kept
+        let missed = matches!(held.standing, Standing::Above | Standing::Below);
+        let spare = if held.point.is_some() && !missed { 9 } else { 5 };
         for (n, words) in wrapped(&gauge.pieces(held), width).into_iter().enumerate() {
-            let worth = if n > 0 { DETAIL } else { [6, 2][usize::from(first)] };
+            let worth = if n > 0 {
+                DETAIL
+            } else if first {
+                2
+            } else {
+                spare + 1
+            };
             let role = if n == 0 { Role::Range } else { Role::Quiet };
             out.push(Line { worth, kind: Kind::Words(words, role) });
         }
-        out.push(Line { worth: [5, 0][usize::from(first)], kind: Kind::Bar(gauge.range(i, held)) });
+        out.push(Line { worth: if first { 0 } else { spare }, kind: Kind::Bar(gauge.range(i, held)) });
     }
     out.push(Line { worth: 1, kind: Kind::Bar(gauge.reading("tried", gauge.tried, Role::Tried)) });
     if let Some(now) = gauge.now {
