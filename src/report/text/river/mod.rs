@@ -41,7 +41,7 @@ pub(super) fn body(context: &Context, answer: &RiverAnswer) -> String {
     out.push('\n');
     out.push_str(&needed(context, answer, system));
     out.push_str(&standings(context, answer, system));
-    for (i, line) in days(context, answer, system).into_iter().enumerate() {
+    for (i, line) in days(context, answer, system, super::WIDTH - 2).into_iter().enumerate() {
         out.push_str(if i == 0 { "Day by day, each release held\n  " } else { "  " });
         out.push_str(&line);
         out.push('\n');
