@@ -3,6 +3,7 @@
 #![expect(clippy::unwrap_used, reason = "helpers of tests stand outside test functions")]
 
 mod aerated;
+mod ahead;
 mod answered;
 mod casts;
 mod cautions;

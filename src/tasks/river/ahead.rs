@@ -107,14 +107,16 @@ fn first(context: &Context, (now, way): (&Way, &Way), point: usize) -> Option<Ti
     });
     let (target, run) = run.min_by_key(|(_, run)| run.first)?;
     let conditions = &context.conditions;
-    let leave_by = latest(site, conditions, way.flow_m3s(), point, begins(run.first)?)?;
+    let begins = begins(run.first)?;
+    let leave_by = latest(site, conditions, way.flow_m3s(), point, begins)?;
     Some(Timely {
         point,
         target,
         day: run.first,
         days: run.days,
         worst: run.worst,
-        travel_h: there.travel_h,
+        // of that day: streams that join make the water faster or slower
+        travel_h: (begins - leave_by).as_seconds_f64() / SECONDS_H,
         leave_by,
         late: leave_by < context.on,
         rise_first_h: there.rise_first_h,
@@ -205,6 +207,8 @@ fn dates_of(days: &Days) -> impl Iterator<Item = NaiveDate> + '_ {
     days.days.keys().copied()
 }
 
+/// Seconds of an hour.
+const SECONDS_H: f64 = 3600.0;
 /// Milliseconds of an hour.
 const HOUR_MS: f64 = 3_600_000.0;
 /// The longest way looked at, hours (choice): a year.
