@@ -21,7 +21,9 @@ const STEP_H: f64 = 1.0;
 /// Steps towards the balance of a mean day, from which the first day begins (choice).
 const BALANCING: usize = 20;
 
+/// Seconds of an hour (standard).
 const HOUR_S: f64 = 3600.0;
+/// Seconds of a day (standard).
 const DAY_S: f64 = 86_400.0;
 
 /// Hours that water stays, at a flow.

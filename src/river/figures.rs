@@ -40,8 +40,10 @@ impl Figures {
         };
         let temperature = |w: &Water| Some(w.temperature_c);
         let oxygen = |w: &Water| w.oxygen_mg_l;
-        let share =
-            |w: &Water| w.oxygen_mg_l.map(|o| o / saturation_mg_l(w.temperature_c, 0.0, pressure_atm));
+        let share = |w: &Water| {
+            let full = saturation_mg_l(w.temperature_c, 0.0, pressure_atm);
+            w.oxygen_mg_l.filter(|_| full > 0.0).map(|o| o / full)
+        };
         let range = fold(&temperature, f64::max).zip(fold(&temperature, f64::min));
         let change = hourly(slices, there).windows(2).fold(0.0, |most, pair| match *pair {
             [a, b] => f64::max(most, (b - a).abs()),

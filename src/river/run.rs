@@ -17,7 +17,9 @@ use super::slices::Slice;
 use super::stream::{brought, seeping_into};
 use super::water::{Stretch, Told, Water};
 
+/// Hours of a day (standard).
 const DAY_H: f64 = 24.0;
+/// Seconds of an hour (standard).
 const HOUR_S: f64 = 3600.0;
 
 /// What a parcel was like at a place.

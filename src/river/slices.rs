@@ -6,6 +6,7 @@ use super::water::Water;
 /// Differences of time that do not count, h (choice).
 const SAME_H: f64 = 1e-9;
 
+/// Hours of a day (standard).
 const DAY_H: f64 = 24.0;
 
 /// Water that is released alike for an hour or less, or all day.

@@ -21,10 +21,14 @@ const RELAXED: f64 = 0.5;
 const WARMED_C: f64 = 0.5;
 /// Greatest growth of the flow by seepage in a piece (choice).
 const GROWTH: f64 = 0.02;
-/// Shortest piece, h (choice).
+/// Shortest piece, h, and most pieces of a stretch (choice): in less water than a river has, or slower, the pieces get
+/// coarse rather than endless.
 const LEAST_H: f64 = 1e-3;
+const MOST_PIECES: f64 = 5000.0;
 
+/// Seconds of an hour (standard).
 const HOUR_S: f64 = 3600.0;
+/// Hours of a day (standard).
 const DAY_H: f64 = 24.0;
 
 /// A parcel of water on its way.
@@ -106,14 +110,15 @@ impl Stretch<'_> {
         let (mut h_per_m, held) = per_m(water.flow_m3s);
         told.held |= held;
         let mut left_m = self.length_m;
+        let least_h = LEAST_H.max(h_per_m * self.length_m / MOST_PIECES);
         let mut k20 = None;
         while left_m > 0.0 {
             let (net, slope) = self.sky.heat(*clock_h, water.temperature_c, reach.shade);
             let per_h = HOUR_S / (HEAT_J_M3_C * reach.depth_m);
             let piece_h = (PIECE_H.min(RELAXED / (-slope * per_h)).min(WARMED_C / (net.abs() * per_h))
                 * self.stride)
-                .max(LEAST_H)
-                .min(self.sky.lasts_h(*clock_h).max(LEAST_H));
+                .min(self.sky.lasts_h(*clock_h))
+                .max(least_h);
             let mut dx = if h_per_m > 0.0 { left_m.min(piece_h / h_per_m) } else { left_m };
             if let Some(s) = seeping {
                 dx = dx.min(GROWTH * self.stride * water.flow_m3s.max(s.per_m_m3s) / s.per_m_m3s);

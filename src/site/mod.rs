@@ -31,7 +31,7 @@ pub use raw::{
 };
 pub use raw_river::{RawAfterbay, RawInflow, RawMonthly, RawPoint, RawReach, RawRiver, RawSeepage};
 pub use river::{Afterbay, Decay, Inflow, Point, Reach, River, Seepage, Surface, Yearly};
-pub use travel::{BULK_PER_WATER, ROUGHNESS, hours_at};
+pub use travel::{BULK_PER_WATER, MOST_TRAVEL_H, ROUGHNESS, hours_at};
 
 /// Where the dam stands.
 #[derive(Debug, Clone, Copy, Default, PartialEq)]

@@ -15,6 +15,9 @@ pub const BULK_PER_WATER: f64 = 5.0 / 3.0;
 /// Least flow that is given a time, m3/s (choice): below it a river stands.
 const LEAST_FLOW_M3S: f64 = 1e-6;
 
+/// Longest time through a reach, h (choice: eleven years; a flow near nothing would take for ever).
+pub const MOST_TRAVEL_H: f64 = 1e5;
+
 /// Seconds of an hour (standard).
 const HOUR_S: f64 = 3600.0;
 
@@ -54,7 +57,7 @@ impl Reach {
             let velocity = self.slope.map_or(flow / (self.width_m * self.depth_m), |slope| {
                 (slope.sqrt() / self.roughness).powf(0.6) * (flow / self.width_m).powf(0.4)
             });
-            (self.length_m / velocity / HOUR_S, false)
+            ((self.length_m / velocity / HOUR_S).min(MOST_TRAVEL_H), false)
         })
     }
 

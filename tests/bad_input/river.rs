@@ -53,6 +53,13 @@ pub(super) const REFUSED: &[Case] = &[
     ("[[20, 9], [60, 5]]", "[[60, 5], [20, 9]]", "hours-table", "river.reaches[0].travel_hours", "must rise"),
     ("[[20, 9], [60, 5]]", "[[20, 9], [60, 9.1]]", "hours-table", "river.reaches[0].travel_hours", "slower"),
     ("[[20, 9], [60, 5]]", "[[0, 9], [60, 5]]", "hours-table", "river.reaches[0].travel_hours", "above zero"),
+    (
+        "[[20, 9], [60, 5]]",
+        "[[20, 1e300], [60, 5]]",
+        "hours-table",
+        "river.reaches[0].travel_hours",
+        "100000",
+    ),
     ("[[20, 9], [60, 5]]", "[[20, 9, 1]]", "pair", "river.reaches[0].travel_hours[0]", "two numbers"),
     ("[[20, 4], [60, 2.5]]", "[[20, 2], [60, 2.5]]", "hours-table", "river.reaches[0].rise_hours", "slower"),
     (
@@ -90,6 +97,7 @@ pub(super) const REFUSED: &[Case] = &[
     ("hours: 1.5", "hours: -1", "negative", "river.points[0].warning_hours", "cannot be negative"),
     ("  exchange_w_m2_c: 30\n", "", "equilibrium", "river.equilibrium", "without its exchange"),
     ("  equilibrium: 22\n", "", "equilibrium", "river.exchange_w_m2_c", "without an equilibrium"),
+    ("equilibrium: 22", "equilibrium: 71", "equilibrium", "river.equilibrium", "no equilibrium above"),
     ("equilibrium: 22", "equilibrium: -3", "equilibrium", "river.equilibrium", "below freezing"),
     ("exchange_w_m2_c: 30", "exchange_w_m2_c: 0", "not-positive", "river.exchange_w_m2_c", "above zero"),
     ("volume: 400000", "volume: 0", "not-positive", "river.afterbay.volume", "above zero"),

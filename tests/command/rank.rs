@@ -57,7 +57,7 @@ fn scenario_the_demonstration_answers_with_every_key() {
         assert!(keys(&answer).contains(&key), "{key}");
     }
     let of_mix: Vec<&str> =
-        "set open release targets cold_water_m3_per_day moves moved crew_hours move_cost \
+        "set open release targets conflicts points cold_water_m3_per_day moves moved crew_hours move_cost \
          lead_days earliest generation_lost_mw share_inside_both governs limits warnings not_checked unsure \
          reasons alike wells"
             .split_whitespace()

@@ -13,6 +13,9 @@ use super::{In, text, whole};
 const MOST_DEGREE_DAYS: f64 = 2e4;
 
 pub(super) fn target(read: &In, map: &Map) -> RawTarget {
+    // in the order in which the keys are told
+    let name = map.required("name").and_then(|v| v.text().map(str::to_owned));
+    let (from, to) = (text(map, "from"), text(map, "to"));
     let statistic = text(map, "statistic");
     let reference = text(map, "reference");
     let kind = statistic.as_deref().and_then(Statistic::parse);
@@ -26,9 +29,9 @@ pub(super) fn target(read: &In, map: &Map) -> RawTarget {
     let share = |key| read.optional(map, key, Dimension::Percent).map(|percent| percent / 100.0);
     let listed = |key| map.optional(key).and_then(|v| v.text_list()).unwrap_or_default();
     RawTarget {
-        name: map.required("name").and_then(|v| v.text().map(str::to_owned)),
-        from: text(map, "from"),
-        to: text(map, "to"),
+        name,
+        from,
+        to,
         days: whole(map, "days"),
         days_share: share("percent"),
         base_c: read.optional(map, "base", Dimension::Temperature),

@@ -111,7 +111,10 @@ pub(super) fn value_words(s: &TargetStanding, rule: &Target, system: System) -> 
     let warm = s.value_c.filter(|_| !plain && rule.has_range()).map(one);
     let count = s.count.map(|count| match rule.statistic {
         Statistic::ShareOfDays(_) => format!("with today {count:.0} % of days above"),
-        Statistic::DaysInARow(_) => format!("with today {count:.0} days in a row above"),
+        Statistic::DaysInARow(_) => {
+            let days = if count < 1.5 && count > 0.5 { "day" } else { "days" };
+            format!("with today {count:.0} {days} in a row above")
+        }
         _ => format!("with today {count:.0} days above"),
     });
     let share = s.oxygen_share.filter(|_| rule.oxygen_min_share.is_some());

@@ -3,7 +3,7 @@
 use std::collections::HashMap;
 
 use crate::problem::Problem;
-use crate::site::{Inflow, ROUGHNESS, RawInflow, RawReach, RawRiver, Reach, Seepage, Yearly};
+use crate::site::{Inflow, MOST_TRAVEL_H, ROUGHNESS, RawInflow, RawReach, RawRiver, Reach, Seepage, Yearly};
 use crate::target::DAM;
 use crate::units::say;
 
@@ -16,7 +16,7 @@ pub(super) const SLACK_M: f64 = 0.5;
 const WIDTHS: f64 = 4.0;
 
 /// Water temperatures that can be, C (choice, as for casts).
-const WATER_C: std::ops::RangeInclusive<f64> = -1.0..=45.0;
+pub(super) const WATER_C: std::ops::RangeInclusive<f64> = -1.0..=45.0;
 
 /// The reaches end to end; `None` for one that is not sound.
 pub(super) fn reaches(river: &RawRiver, problems: &mut Vec<Problem>) -> Vec<Option<Reach>> {
@@ -107,7 +107,7 @@ fn reach(r: &RawReach, path: &str, from_m: Option<f64>, problems: &mut Vec<Probl
 
 /// Whether flows of a table rise and its hours do not.
 fn falls(rows: &[(f64, f64)], path: String, problems: &mut Vec<Problem>) -> bool {
-    let positive = rows.iter().all(|(flow, hours)| *flow > 0.0 && *hours > 0.0);
+    let positive = rows.iter().all(|(flow, hours)| *flow > 0.0 && *hours > 0.0 && *hours <= MOST_TRAVEL_H);
     let ordered = rows.windows(2).all(|pair| match *pair {
         [(q0, h0), (q1, h1)] => q0 < q1 && h0 >= h1,
         _ => true,
@@ -118,7 +118,7 @@ fn falls(rows: &[(f64, f64)], path: String, problems: &mut Vec<Problem>) -> bool
     problems.push(
         Problem::refused(
             "hours-table",
-            "flows of the table must rise from above zero, and its hours fall: more water is not slower",
+            "flows of the table must rise from above zero, and its hours, 100000 at most, fall: more water is not slower",
             "write [[20, 9], [60, 5]], the least flow first",
         )
         .at(path),

@@ -110,12 +110,16 @@ fn surface(raw: &Raw, river: &RawRiver, problems: &mut Vec<Problem>) -> Option<S
             None
         }
     };
-    if river.equilibrium_c.as_ref().is_some_and(|t| least(t) < FREEZING_C) {
+    if river.equilibrium_c.as_ref().is_some_and(|t| extreme(t, f64::max) > *reaches::WATER_C.end()) {
+        let words = format!("no equilibrium above {} is meant", say::c(*reaches::WATER_C.end(), 0));
+        problems.push(Problem::refused("equilibrium", words, "check its unit").at("river.equilibrium"));
+    }
+    if river.equilibrium_c.as_ref().is_some_and(|t| extreme(t, f64::min) < FREEZING_C) {
         let words = "the equilibrium lies below freezing, and no ice is computed";
         let cure = "give the months of open water, with 0 C for the others";
         problems.push(Problem::refused("equilibrium", words, cure).at("river.equilibrium"));
     }
-    if river.exchange_w_m2_c.as_ref().is_some_and(|k| least(k) <= 0.0) {
+    if river.exchange_w_m2_c.as_ref().is_some_and(|k| extreme(k, f64::min) <= 0.0) {
         let at = "river.exchange_w_m2_c".to_owned();
         positive(Some(0.0), at, "exchange_w_m2_c", problems);
     }
@@ -139,11 +143,8 @@ fn surface(raw: &Raw, river: &RawRiver, problems: &mut Vec<Problem>) -> Option<S
     river.weather.clone().map(Surface::File).or(months.map(|m| Surface::Monthly(Box::new(m)))).or(given)
 }
 
-fn least(yearly: &Yearly) -> f64 {
-    match yearly {
-        Yearly::Constant(value) => *value,
-        Yearly::Monthly(values) => values.iter().copied().fold(f64::INFINITY, f64::min),
-    }
+fn extreme(yearly: &Yearly, of: fn(f64, f64) -> f64) -> f64 {
+    (2..=12).fold(yearly.in_month(1), |so_far, month| of(so_far, yearly.in_month(month)))
 }
 
 /// Targets name the dam or a point of the river.

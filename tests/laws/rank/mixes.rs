@@ -3,9 +3,8 @@
 use std::collections::BTreeMap;
 use std::rc::Rc;
 
-use gatemix::mix::{Asked, is_wish};
-
 use gatemix::mix::limits::{self, Before, Check, Rule, Whole};
+use gatemix::mix::{Asked, is_wish};
 use gatemix::mix::{Gate, Level};
 use gatemix::rank::{Criterion, Question};
 use gatemix::site::Aeration;

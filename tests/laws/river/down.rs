@@ -203,3 +203,21 @@ fn scenario_what_is_not_known_on_the_way_is_told() {
     assert_eq!(course.along.last().unwrap().figures.oxygen_mean_mg_l, None);
     assert!(course.along.len() > 60);
 }
+
+/// Stepped with its whole budget of heat, water that is long on its way comes to the equilibrium of the same budget.
+#[test]
+fn law_under_one_weather_all_time_reaches_the_root_of_the_budget() {
+    for (air_c, sun, depth) in [(24.0, 260.0, 1.0), (5.0, 120.0, 0.4), (30.0, 330.0, 3.0)] {
+        let site = dam(&format!(
+            "{{ monthly: {{ air: {air_c}, humidity: 55, wind: 3, cloud: 30, radiation_w_m2: {sun} }},
+               reaches: [ {{ name: a, length_km: 20, width: 40, depth: {depth}, travel_hours: [[20, 5000]], shade: 20 }} ],
+               points: [ {{ name: end, at_km: 20 }} ] }}"
+        ));
+        let Some(gatemix::site::Surface::Monthly(airs)) = &site.river.as_ref().unwrap().surface else {
+            panic!()
+        };
+        let balance = gatemix::weather::equilibrium_c(&airs[6], 0.2).unwrap();
+        let end = steady(&site, 20.0, 8.0, 8.0).points[0].figures.mean_c;
+        assert_abs_diff_eq!(end, balance, epsilon = 1e-6);
+    }
+}

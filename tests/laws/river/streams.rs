@@ -85,3 +85,45 @@ fn scenario_ice_and_reaeration_beyond_its_range_are_told() {
     assert!(kinds(&frozen).contains(&"ice"));
     assert_abs_diff_eq!(frozen.points[0].figures.mean_c, 0.0, epsilon = 1e-12);
 }
+
+/// Rivers no one has still answer with numbers, and soon.
+#[test]
+fn scenario_odd_rivers_give_figures() {
+    for (depth, slope, exchange, seepage) in
+        [(0.001, 0.5, 3000.0, 0.0), (900.0, 1e-9, 1e-6, 0.0), (1.0, 0.001, 30.0, 5000.0)]
+    {
+        let site = dam(&format!(
+            "{{ equilibrium: 44, exchange_w_m2_c: {exchange}, afterbay: {{ volume: 1.0e12, area: 1 }},
+               reaches: [ {{ name: a, length_km: 9000, width: 4, depth: {depth}, slope: {slope},
+               seepage: {{ flow: {seepage}, temperature: 11, oxygen: 6 }} }} ],
+               points: [ {{ name: end, at_km: 9000 }} ], decay: {{ demand: 5000, per_day: 50 }} }}"
+        ));
+        for flow in [0.0, 1e-9, 1e6] {
+            let parts = [part(12.0, flow, 5.0, 8.0), part(12.0, 0.0, 9.0, 0.0)];
+            let figures = course(&site, &Conditions::default(), day(), &parts).unwrap().points[0].figures;
+            let (greatest, least) = figures.range_c.unwrap();
+            assert!(0.0 <= least && least <= figures.mean_c + 1e-9 && greatest <= 44.1, "{figures:?}");
+            let oxygen = figures.oxygen_mean_mg_l.unwrap();
+            assert!(oxygen.is_finite() && figures.oxygen_min_mg_l.unwrap() >= 0.0, "{figures:?}");
+        }
+    }
+}
+
+/// A point where two reaches meet sees the stream that joins just there, in whichever of both it is listed.
+#[test]
+fn scenario_a_point_at_a_junction_sees_the_mixed_water() {
+    let creek = "inflows: [ { name: s, at_km: 10, flow: 20, temperature: 20, oxygen: 8 } ],";
+    for (upper, lower) in [(creek, ""), ("", creek)] {
+        let site = dam(&format!(
+            "{{ equilibrium: 10, exchange_w_m2_c: 1.0e-9, reaches: [
+               {{ name: a, length_km: 10, width: 40, depth: 1, {upper} travel_hours: [[20, 8]] }},
+               {{ name: b, length_km: 10, width: 40, depth: 1, {lower} travel_hours: [[40, 8]] }} ],
+               points: [ {{ name: above, at_km: 9.999 }}, {{ name: at, at_km: 10 }}, {{ name: end, at_km: 20 }} ] }}"
+        ));
+        let course = course(&site, &Conditions::default(), day(), &[part(24.0, 20.0, 10.0, 8.0)]).unwrap();
+        let seen: Vec<f64> = course.points.iter().map(|p| p.figures.mean_c).collect();
+        assert_abs_diff_eq!(seen[..], [10.0, 15.0, 15.0][..], epsilon = 1e-6);
+        let hours: Vec<f64> = course.points.iter().map(|p| p.travel_h).collect();
+        assert_abs_diff_eq!(hours[..], [7.9992, 8.0, 16.0][..], epsilon = 1e-9);
+    }
+}

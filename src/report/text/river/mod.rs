@@ -1,6 +1,7 @@
 //! What arrives downstream, in words.
 
 mod ahead;
+mod amounts;
 mod places;
 mod record;
 mod rules;
@@ -9,6 +10,7 @@ use std::fmt::Write as _;
 
 use crate::problem::{Problem, Weight, harmless};
 use crate::report::flags_of;
+use crate::site::Surface;
 use crate::tasks::Context;
 use crate::tasks::river::{RiverAnswer, Way, Which};
 use crate::units::System;
@@ -16,8 +18,9 @@ use crate::units::System;
 use super::{flow, labelled, list, setting_words, wrapped};
 
 pub use ahead::{days, timely_words};
+pub use amounts::unit_si;
 pub use places::{PlaceRow, places, stage_words, window_words};
-pub use record::{PROVISIONAL, SIGNS, calendar, record};
+pub use record::{PROVISIONAL, REVIEWED, SIGNS, calendar, record};
 pub use rules::{RuleRow, RuleStanding, conflicts, rules};
 
 /// Columns of a label of the table of places, and of each place.
@@ -31,12 +34,15 @@ pub(super) fn body(context: &Context, answer: &RiverAnswer) -> String {
     for way in &answer.ways {
         out.push_str(&labelled(title(way.which), &set_words(context, way, system)));
     }
+    let leaves = context.on.format("%Y-%m-%d");
+    let of = format!("{}; at points the water that leaves the dam on {leaves}", weather_words(context));
+    out.push_str(&labelled("River", &of));
     out.push('\n');
     out.push_str(&table(&places(context, answer, system)));
     out.push('\n');
     out.push_str(&needed(context, answer, system));
     out.push_str(&standings(context, answer, system));
-    for (i, line) in days(context, answer, system).into_iter().enumerate() {
+    for (i, line) in days(context, answer, system, super::WIDTH - 2).into_iter().enumerate() {
         out.push_str(if i == 0 { "Day by day, each release held\n  " } else { "  " });
         out.push_str(&line);
         out.push('\n');
@@ -55,6 +61,27 @@ pub(super) fn body(context: &Context, answer: &RiverAnswer) -> String {
     let notes: Vec<&Problem> = answer.notes.iter().collect();
     out.push_str(&list("The river", &notes, false, system));
     out
+}
+
+/// What the way down is computed with.
+pub fn weather_words(context: &Context) -> String {
+    let site = context.site();
+    let weather = &context.conditions.weather;
+    let Some(river) = &site.river else { return "nothing is told of it".to_owned() };
+    match &river.surface {
+        None => "what it trades with the air is not given".to_owned(),
+        Some(Surface::Given { .. }) => {
+            "given equilibrium temperature and exchange: means of the day".to_owned()
+        }
+        Some(Surface::Monthly(_)) => "mean weather of the month: means of the day".to_owned(),
+        Some(Surface::File(file)) => {
+            let step = if weather.is_hourly() { "hour by hour" } else { "means of the day" };
+            let forecast = weather.forecast_from.map_or_else(String::new, |from| {
+                format!(", forecast from {}", from.with_timezone(&site.offset).format("%Y-%m-%d %H:%M"))
+            });
+            format!("weather of {}: {step}{forecast}", harmless(file))
+        }
+    }
 }
 
 fn title(which: Which) -> &'static str {

@@ -2,18 +2,23 @@
 
 use crate::mix::TargetStanding;
 use crate::problem::harmless;
-use crate::target::Target;
+use crate::target::{Standing, Target};
 use crate::tasks::Context;
-use crate::tasks::river::{RiverAnswer, Way};
+use crate::tasks::river::{RiverAnswer, Way, Which};
 use crate::units::{Dimension, System, figure, in_system};
 
+use super::super::mix::missed;
 use super::super::targets::{EXAMPLE, HELD_AS_WISH, range, standing_words, value_words};
 
 /// How one release stands against a rule.
 #[derive(Debug, Clone, PartialEq)]
 pub struct RuleStanding {
+    /// Which release.
+    pub of: Which,
     /// In words, the release named first.
     pub words: String,
+    /// What is outside and by how much, else that all is inside, or unknown.
+    pub short: String,
     /// Whether it is a miss.
     pub missed: bool,
 }
@@ -27,9 +32,9 @@ pub struct RuleRow {
     pub name: String,
     /// Where it applies.
     pub point: String,
-    /// Its statistic.
+    /// What its range is of; empty where it sets none.
     pub statistic: String,
-    /// Statistic and range in words.
+    /// Statistic and range in words, and what the standing rests on.
     pub asks: String,
     /// Low, preferred, high and oxygen, each with its value in the unit shown.
     pub cells: [(&'static str, Option<String>); 4],
@@ -54,6 +59,8 @@ pub fn rules(context: &Context, answer: &RiverAnswer, system: System) -> Vec<Rul
             let value = value_words(s, rule, system).map_or_else(String::new, |v| format!("{v}, "));
             let why = s.words.as_deref().map_or_else(String::new, |w| format!(" ({})", in_system(w, system)));
             Some(RuleStanding {
+                of: way.which,
+                short: short(s, rule, system),
                 words: format!("{}: {value}{}{why}", way.which.word(), standing_words(s, rule, system)),
                 missed: s.missed(),
             })
@@ -63,8 +70,8 @@ pub fn rules(context: &Context, answer: &RiverAnswer, system: System) -> Vec<Rul
             target: s.target,
             name: harmless(&rule.name),
             point: harmless(&rule.point),
-            statistic: in_system(&rule.statistic.words(), system),
-            asks: format!("{}{wish}", asks(rule, system)),
+            statistic: statistic(rule, system),
+            asks: format!("{}{wish}; {}", asks(rule, system), s.basis.words()),
             cells: cells(rule, system),
             standings: answer.ways.iter().filter_map(of).collect(),
             governs: s.governs,
@@ -81,9 +88,32 @@ pub fn conflicts(context: &Context, answer: &RiverAnswer, system: System) -> Vec
     told.collect()
 }
 
+/// What is outside and by how much; else that all is inside, or that something is not known.
+fn short(s: &TargetStanding, rule: &Target, system: System) -> String {
+    let unit = system.unit(Dimension::TemperatureDifference);
+    let warm = s.temperature.1.map(|by| missed(s.temperature.0, unit.from_si(by), unit.symbol()));
+    let aired = s.oxygen.1.map(|by| format!("oxygen {}", missed(s.oxygen.0, by, "mg/L")));
+    let outside = |standing: Standing| matches!(standing, Standing::Above | Standing::Below);
+    let told = [warm.filter(|_| outside(s.temperature.0)), aired.filter(|_| outside(s.oxygen.0))];
+    let told: Vec<String> = told.into_iter().flatten().collect();
+    let unknown = (rule.has_range() && s.temperature.0 == Standing::Unknown)
+        || (rule.has_floor() && s.oxygen.0 == Standing::Unknown);
+    match (told.is_empty(), unknown) {
+        (true, true) => "UNKNOWN".to_owned(),
+        (true, false) => "inside".to_owned(),
+        (false, _) => told.join(", "),
+    }
+}
+
 /// What a rule asks, with its statistic.
 pub(super) fn asks(rule: &Target, system: System) -> String {
-    format!("{}, {}", in_system(&rule.statistic.words(), system), range(rule, system))
+    let statistic = statistic(rule, system);
+    if statistic.is_empty() { range(rule, system) } else { format!("{statistic}, {}", range(rule, system)) }
+}
+
+/// What its range is of; empty where it sets none, since a floor names its own.
+fn statistic(rule: &Target, system: System) -> String {
+    if rule.has_range() { in_system(&rule.statistic.words(), system) } else { String::new() }
 }
 
 /// Its floor of oxygen.

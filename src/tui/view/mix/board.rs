@@ -337,11 +337,16 @@ fn target_words(i: usize, target: &Target, system: System) -> [(Cell, String); 4
     let unit = system.unit(target.dimension());
     let warm =
         |word: &str, c: Option<f64>| format!("{word} {}", c.map_or("-".into(), |c| figure(c, unit, 1)));
+    let air = match (target.oxygen_min_mg_l, target.oxygen_min_share) {
+        (Some(least), _) => format!("{least:.1}"),
+        (None, Some(least)) => format!("{:.0}%", 100.0 * least),
+        (None, None) => "-".into(),
+    };
     [
         (Cell::Low(i), warm("low", target.low_c)),
         (Cell::Preferred(i), warm("pref", target.preferred_c)),
         (Cell::High(i), warm("high", target.high_c)),
-        (Cell::Oxygen(i), format!("O2 {}", target.oxygen_min_mg_l.map_or("-".into(), |o| format!("{o:.1}")))),
+        (Cell::Oxygen(i), format!("O2 {air}")),
     ]
 }
 
