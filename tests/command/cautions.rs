@@ -123,8 +123,9 @@ fn scenario_a_river_outside_all_waters_of_the_cast_is_flagged() {
     // every text that speaks of the cast tells it too
     let folder = Folder::usual();
     std::fs::write(folder.path().join("tailwater.csv"), tailwater(&days, 25.0)).unwrap();
-    for task in ["pool", "mix"] {
-        assert!(run(&[task, folder.named()]).out.contains("tailwater-apart"), "{task}");
+    for task in [&["pool"][..], &["mix"], &["rank", "--release", "30", "--step", "20%"], &["river"]] {
+        let text = run(&[&[task[0], folder.named()], &task[1..]].concat()).out;
+        assert_eq!(text.matches("tailwater.csv has a mean").count(), 1, "{task:?}: {text}");
     }
 }
 

@@ -8,7 +8,8 @@ mod rules;
 
 use std::fmt::Write as _;
 
-use crate::problem::{Problem, harmless};
+use crate::problem::{Problem, Weight, harmless};
+use crate::report::flags_of;
 use crate::site::Surface;
 use crate::tasks::Context;
 use crate::tasks::river::{RiverAnswer, Way, Which};
@@ -53,6 +54,10 @@ pub(super) fn body(context: &Context, answer: &RiverAnswer) -> String {
     }
     out.push_str(&recorded);
     out.push('\n');
+    // what is said of a file beside the casts is a note of the river already
+    let mut cast = flags_of(&context.profile.flags);
+    cast.retain(|flag| flag.weight != Weight::Note && !answer.notes.contains(flag));
+    out.push_str(&list("The cast", &cast, true, system));
     let notes: Vec<&Problem> = answer.notes.iter().collect();
     out.push_str(&list("The river", &notes, false, system));
     out
