@@ -9,7 +9,7 @@ use crate::tasks::Context;
 use crate::tasks::river::{Arriving, RiverAnswer, Timely};
 use crate::units::{Dimension, System, figure};
 
-use super::super::{step, temperature};
+use super::amounts;
 
 /// Columns of the date, of the air, and between figures.
 const DATE: usize = 17;
@@ -41,7 +41,11 @@ pub fn days(context: &Context, answer: &RiverAnswer, system: System, width: usiz
     let each = (width.saturating_sub(DATE + AIR) / (wide * answer.ways.len()).max(1)).max(1);
     let date = |day: &Arriving| {
         let air = day.air_c.map_or_else(|| "-".to_owned(), |c| figure(c, unit, 1));
-        let mark = if day.forecast { "forecast" } else { "" };
+        let mark = match (day.repeated, day.forecast) {
+            (true, _) => "repeated",
+            (false, true) => "forecast",
+            (false, false) => "",
+        };
         format!("{:<DATE$}{air:<AIR$}", format!("{} {mark}", day.date.format("%m-%d")))
     };
     let mut out = Vec::new();
@@ -57,7 +61,12 @@ pub fn days(context: &Context, answer: &RiverAnswer, system: System, width: usiz
     }
     let names = river.points.iter().enumerate().map(|(i, p)| format!("{} {}", i + 1, harmless(&p.name)));
     let names: Vec<String> = names.collect();
-    out.push(format!("{}; {}, mean (greatest)", names.join(", "), unit.symbol()));
+    let repeated = if answer.days.iter().any(|d| d.repeated) {
+        "; repeated: the weather ends, that of the day before runs on"
+    } else {
+        ""
+    };
+    out.push(format!("{}; {}, mean (greatest){repeated}", names.join(", "), unit.symbol()));
     out
 }
 
@@ -76,16 +85,18 @@ pub fn timely_words(context: &Context, answer: &RiverAnswer, system: System) -> 
     let points = site.river.as_ref().map_or(&[][..], |r| &r.points);
     let words = |t: &Timely| {
         let (point, rule) = (points.get(t.point)?, site.targets.get(t.target)?);
-        let days = if t.days == 1 { "1 day".to_owned() } else { format!("{} days", t.days) };
+        let (on, value, by) = t.worst;
         let late = if t.late { ", which is past" } else { "" };
         Some(format!(
-            "{}: if this release is held, `{}` is missed for {days} from {} ({}, {} more than it leaves); a change must \
-             leave the dam by {}{late}: its water takes {:.1} h, its rise can be there after {:.1} h, in bulk after {:.1} h",
+            "{}: if this release is held, `{}` is missed for {} from {} (on {} {}, by {}); a change must leave the dam \
+             by {}{late}: its water takes {:.1} h, its rise can be there after {:.1} h, in bulk after {:.1} h",
             harmless(&point.name),
             harmless(&rule.name),
+            super::record::days_of(t.days as f64),
             t.day.format("%m-%d"),
-            temperature(t.value_c, system),
-            step(t.by_c, system),
+            on.format("%m-%d"),
+            amounts::value(rule, value, system),
+            amounts::by(rule, by, system),
             t.leave_by.format("%m-%d %H:%M"),
             t.travel_h,
             t.rise_first_h,

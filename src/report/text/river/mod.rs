@@ -1,6 +1,7 @@
 //! What arrives downstream, in words.
 
 mod ahead;
+mod amounts;
 mod places;
 mod record;
 mod rules;
@@ -16,8 +17,9 @@ use crate::units::System;
 use super::{flow, labelled, list, setting_words, wrapped};
 
 pub use ahead::{days, timely_words};
+pub use amounts::unit_si;
 pub use places::{PlaceRow, places, stage_words, window_words};
-pub use record::{PROVISIONAL, SIGNS, calendar, record};
+pub use record::{PROVISIONAL, REVIEWED, SIGNS, calendar, record};
 pub use rules::{RuleRow, RuleStanding, conflicts, rules};
 
 /// Columns of a label of the table of places, and of each place.
@@ -31,7 +33,9 @@ pub(super) fn body(context: &Context, answer: &RiverAnswer) -> String {
     for way in &answer.ways {
         out.push_str(&labelled(title(way.which), &set_words(context, way, system)));
     }
-    out.push_str(&labelled("River", &weather_words(context)));
+    let leaves = context.on.format("%Y-%m-%d");
+    let of = format!("{}; at points the water that leaves the dam on {leaves}", weather_words(context));
+    out.push_str(&labelled("River", &of));
     out.push('\n');
     out.push_str(&table(&places(context, answer, system)));
     out.push('\n');

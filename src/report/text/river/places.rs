@@ -27,6 +27,9 @@ pub struct PlaceRow {
 /// A change of stage smaller than this is none, m: the figure shown would be zero (choice).
 const SAME_STAGE_M: f64 = 0.05;
 
+/// Oxygen that would be shown as none, mg/L (half of the digit shown).
+const LEAST_SHOWN_MG_L: f64 = 0.05;
+
 /// Where nothing is to be told.
 const NONE: &str = "-";
 
@@ -153,20 +156,26 @@ pub fn window_words(window: &Window, system: System) -> String {
     let unit = system.unit(Dimension::Temperature);
     let shown = |c: f64| temperature(c, system);
     let mut parts = Vec::new();
-    if window.reachable {
+    if window.reachable != Some(false) {
         match (window.low_c, window.high_c) {
             (Some(low), Some(high)) => parts.push(format!("{} to {}", figure(low, unit, 1), shown(high))),
             (Some(low), None) => parts.push(format!("from {}", shown(low))),
             (None, Some(high)) => parts.push(format!("to {}", shown(high))),
-            (None, None) if !window.of_temperature || !window.unknown.is_empty() => {}
-            (None, None) => parts.push("any temperature".to_owned()),
+            (None, None) if window.ranged && window.unknown.is_empty() => {
+                parts.push("any temperature".to_owned());
+            }
+            (None, None) => {}
         }
     } else {
-        parts.push("OUT OF REACH: no release keeps its range".to_owned());
+        parts.push("OUT OF REACH: no release keeps its rules".to_owned());
     }
     match window.oxygen_min_mg_l {
-        Some(least) if least < 0.05 => parts.push("any oxygen".to_owned()),
-        Some(least) => parts.push(format!("oxygen from {least:.1} mg/L")),
+        Some(least) if least < LEAST_SHOWN_MG_L => parts.push("any oxygen".to_owned()),
+        Some(least) => {
+            let above = window.saturation_mg_l.is_some_and(|s| least > s);
+            let words = if above { ", above saturation there" } else { "" };
+            parts.push(format!("oxygen from {least:.1} mg/L{words}"));
+        }
         None => {}
     }
     let unknown = window.unknown.iter().map(|words| harmless(words)).collect::<Vec<_>>().join(", ");

@@ -103,7 +103,7 @@ fn points(screen: &Screen, dimension: Dimension) -> Vec<AlongPoint> {
         let (range, needed) = match (window, dimension) {
             (None, _) => ((None, None), None),
             (Some(w), Dimension::Temperature) => {
-                ((w.asked_c[0], w.asked_c[1]), w.reachable.then_some((w.low_c, w.high_c)))
+                ((w.asked_c[0], w.asked_c[1]), (w.reachable == Some(true)).then_some((w.low_c, w.high_c)))
             }
             // a floor that any release keeps asks nothing of it
             (Some(w), _) => {
