@@ -95,7 +95,10 @@ pub fn along(picture: &AlongPicture, area: Rect, buf: &mut Buffer, look: Look) {
     };
     frame.draw(picture, &mut pen, look);
     marks::asked(picture, &frame, &mut pen, look);
-    for way in &picture.ways {
+    // the thin one is what might be: it must not hide what is
+    let thin = |way: &&AlongWay| way.stroke == Stroke::Thin;
+    let above = picture.ways.iter().filter(|way| !thin(way));
+    for way in picture.ways.iter().filter(thin).chain(above) {
         let mut dots = Dots::new(look.symbols.grain(), frame.cols, frame.rows);
         let points: Vec<(f64, f64)> = way.places.iter().map(|p| (p.0, picture.shown(p.1))).collect();
         dots.curve(0, way.stroke, &points, &frame.x, &frame.y);

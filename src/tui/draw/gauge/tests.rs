@@ -305,6 +305,6 @@ fn scenario_a_rule_down_the_river_is_held_against_what_arrives_there() {
     assert_eq!(at(tried, ':'), at(at_dam, '['), "{shown:?}");
     assert!(at(range, 'o') > at(tried, 'o') && !tried[at(range, ']')..].starts_with(':'), "{shown:?}");
     // where no line is left for its name, its point heads it
-    let low = drawn(&g, 40, 3, Symbols::Ascii);
+    let low = drawn(&g, 40, 2, Symbols::Ascii);
     assert!(low.iter().any(|l| l.starts_with("Mill")), "{low:?}");
 }
