@@ -88,6 +88,12 @@ impl Weather {
         self.hours.get(&hour).or_else(|| self.days.get(&time.date_naive())).copied()
     }
 
+    /// The last day of which anything is told.
+    pub fn last_day(&self) -> Option<NaiveDate> {
+        let hour = self.hours.keys().next_back().map(DateTime::date_naive);
+        hour.max(self.days.keys().next_back().copied())
+    }
+
     /// The mean air of a day.
     pub fn day(&self, date: NaiveDate) -> Option<Air> {
         self.days.get(&date).copied()

@@ -116,6 +116,7 @@ struct ArrivesJson {
 
 #[derive(Serialize)]
 struct TimelyJson {
+    of: &'static str,
     point: String,
     target: String,
     day: String,
@@ -256,6 +257,7 @@ fn day(context: &Context, answer: &RiverAnswer, day: &Arriving) -> DayJson {
 fn timely(context: &Context, t: &Timely) -> Option<TimelyJson> {
     let rule = context.site().targets.get(t.target)?;
     Some(TimelyJson {
+        of: t.which.word(),
         point: name(context, t.point),
         target: rule.name.clone(),
         day: t.day.to_string(),

@@ -2,6 +2,8 @@
 //!
 //! Methods: `docs/methods.md`, section 6.
 
+use std::collections::BTreeMap;
+
 use chrono::{DateTime, FixedOffset, NaiveDate, TimeDelta};
 
 use crate::mix::reference_days;
@@ -30,6 +32,8 @@ pub struct Arriving {
 /// When a change must leave the dam to be in time for days that would be too warm.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Timely {
+    /// The release that is held.
+    pub which: Which,
     /// Index in the points of the river.
     pub point: usize,
     /// The rule that would be missed, by its index in the targets.
@@ -55,92 +59,116 @@ pub struct Timely {
 /// Days looked ahead, where the weather is told that far (choice).
 const AHEAD: usize = 10;
 
-/// What arrives day by day, today first, as far as the weather is told by the day. The profile is today's throughout.
-pub(super) fn days(context: &Context, ways: &[Way]) -> Vec<Arriving> {
-    let (site, conditions) = (context.site(), &*context.conditions);
-    let of = |date: NaiveDate| {
-        let courses: Vec<Option<Course>> =
-            ways.iter().map(|way| course(site, conditions, date, &way.released())).collect();
-        let forecast = conditions.weather.forecast_from;
-        Arriving {
-            date,
-            forecast: forecast.is_some_and(|from| from.with_timezone(&site.offset).date_naive() <= date),
-            repeated: courses.iter().flatten().flat_map(|c| &c.flags).any(|f| f.kind == "weather-repeated"),
-            air_c: conditions.weather.day(date).map(|air| air.temperature_c),
-            ways: courses
-                .into_iter()
-                .map(|c| c.map_or_else(Vec::new, |c| c.points.iter().map(|p| p.figures).collect()))
-                .collect(),
-        }
-    };
-    dates(context).map(of).collect()
+/// The releases on their way on every day looked at, each computed once.
+pub(super) struct Ahead<'a> {
+    context: &'a Context,
+    ways: &'a [Way],
+    /// By way, then by the day the water leaves the dam; of the release now also days before today.
+    courses: Vec<BTreeMap<NaiveDate, Course>>,
 }
 
-/// Today and the days after it whose weather is told; today alone where weather is not told by the day.
-fn dates(context: &Context) -> impl Iterator<Item = NaiveDate> + '_ {
-    let today = context.on.date_naive();
-    let told = move |date: &NaiveDate| *date == today || context.conditions.weather.day(*date).is_some();
-    today.iter_days().take(AHEAD).take_while(told)
-}
-
-/// When a change must leave the dam, by point, where days ahead would be too warm for a rule if the release is held.
-/// The record of each point is continued by what is computed to arrive, hour for hour, and every rule is held against
-/// both as against a record alone. Of each point the first such days are told that do not begin today: of a miss
-/// today the standings tell.
-pub(super) fn timely(context: &Context, ways: &[Way], way: &Way) -> Vec<Timely> {
-    let points = context.site().river.as_ref().map_or(0, |r| r.points.len());
-    let now = ways.iter().find(|w| w.which == Which::Now).unwrap_or(way);
-    (0..points).filter_map(|point| first(context, (now, way), point)).collect()
-}
-
-/// The first days on which a point would be too warm.
-fn first(context: &Context, (now, way): (&Way, &Way), point: usize) -> Option<Timely> {
-    let site = context.site();
-    let name = &site.river.as_ref()?.points.get(point)?.name;
-    let there = course(site, &context.conditions, context.on.date_naive(), &way.released())?;
-    let there = there.points.into_iter().find(|p| p.point == point)?;
-    let ahead = continued(context, (now, way), point, there.travel_h)?;
-    let begins = |date: NaiveDate| date.and_hms_opt(0, 0, 0)?.and_local_timezone(site.offset).single();
-    let run = way.targets.iter().filter(|s| !s.wish).filter_map(|s| {
-        let rule = site.targets.get(s.target).filter(|rule| rule.point == *name)?;
-        Some((s.target, run_above(context, rule, &ahead)?))
-    });
-    let (target, run) = run.min_by_key(|(_, run)| run.first)?;
-    let conditions = &context.conditions;
-    let begins = begins(run.first)?;
-    let leave_by = latest(site, conditions, way.flow_m3s(), point, begins)?;
-    Some(Timely {
-        point,
-        target,
-        day: run.first,
-        days: run.days,
-        worst: run.worst,
-        // of that day: streams that join make the water faster or slower
-        travel_h: (begins - leave_by).as_seconds_f64() / SECONDS_H,
-        leave_by,
-        late: leave_by < context.on,
-        rise_first_h: there.rise_first_h,
-        rise_h: there.rise_h,
-    })
-}
-
-/// The days of a point as recorded, and after the record as computed to arrive: until the water of today is there of the
-/// release now, then of the one that is held.
-fn continued(context: &Context, (now, way): (&Way, &Way), point: usize, travel_h: f64) -> Option<Days> {
-    let (site, conditions) = (context.site(), &*context.conditions);
-    let name = &site.river.as_ref()?.points.get(point)?.name;
-    let recorded = conditions.observed.get(name).map(|r| &r.temperature_c);
-    let mut readings = recorded.map_or_else(Vec::new, |r| r.readings().to_vec());
-    let end = readings.last().map(|r| r.0);
-    let today = context.on.date_naive();
-    let before = today - TimeDelta::days(1 + whole_days(travel_h));
-    let earlier = before.iter_days().take_while(|date| *date < today).map(|date| (date, now));
-    for (date, of) in earlier.chain(dates(context).map(|date| (date, way))) {
-        let Some(course) = course(site, conditions, date, &of.released()) else { continue };
-        let Some(there) = course.points.iter().find(|p| p.point == point) else { continue };
-        readings.extend(arrives(site.offset, date, there).filter(|r| end.is_none_or(|end| r.0 > end)));
+impl<'a> Ahead<'a> {
+    pub(super) fn of(context: &'a Context, ways: &'a [Way]) -> Self {
+        let (site, conditions) = (context.site(), &*context.conditions);
+        let today = context.on.date_naive();
+        let told = conditions.weather.last_day();
+        let far = ways.iter().flat_map(|w| &w.course).flat_map(|c| &c.points).map(|p| p.travel_h);
+        let back = 1 + whole_days(far.fold(0.0, f64::max));
+        let of = |way: &Way| {
+            let ahead =
+                today.iter_days().take(AHEAD).take_while(|d| *d == today || told.is_some_and(|t| *d <= t));
+            let begin = if way.which == Which::Now { today - TimeDelta::days(back) } else { today };
+            let before = begin.iter_days().take_while(|date| *date < today);
+            let on = |date: NaiveDate| Some((date, course(site, conditions, date, &way.released())?));
+            before.chain(ahead).filter_map(on).collect()
+        };
+        Self { context, ways, courses: ways.iter().map(of).collect() }
     }
-    Some(Series::new(readings).days(site.offset, site.coverage))
+
+    /// What arrives day by day, today first, as far as the weather is told. The profile is today's throughout.
+    pub(super) fn days(&self) -> Vec<Arriving> {
+        let (site, conditions) = (self.context.site(), &*self.context.conditions);
+        let today = self.context.on.date_naive();
+        let mut dates: Vec<NaiveDate> = self.courses.iter().flat_map(BTreeMap::keys).copied().collect();
+        dates.retain(|date| *date >= today);
+        dates.sort_unstable();
+        dates.dedup();
+        let of = |date: NaiveDate| {
+            let courses = || self.courses.iter().map(|courses| courses.get(&date));
+            let figures = |c: &Course| c.points.iter().map(|p| p.figures).collect();
+            let forecast = conditions.weather.forecast_from;
+            Arriving {
+                date,
+                forecast: forecast.is_some_and(|from| from.with_timezone(&site.offset).date_naive() <= date),
+                repeated: courses().flatten().flat_map(|c| &c.flags).any(|f| f.kind == "weather-repeated"),
+                air_c: conditions.weather.day(date).map(|air| air.temperature_c),
+                ways: courses().map(|c| c.map_or_else(Vec::new, figures)).collect(),
+            }
+        };
+        dates.into_iter().map(of).collect()
+    }
+
+    /// When a change must leave the dam, by release and point, where days ahead would be too warm for a rule if that
+    /// release is held. The record of each point is continued by what is computed to arrive, hour for hour, and every
+    /// rule is held against both as against a record alone. Of each point the first such days are told that do not
+    /// begin today: of a miss today the standings tell.
+    pub(super) fn timely(&self) -> Vec<Timely> {
+        let points = self.context.site().river.as_ref().map_or(0, |r| r.points.len());
+        let all = (0..self.ways.len()).flat_map(|way| (0..points).map(move |point| (way, point)));
+        all.filter_map(|(way, point)| self.first(way, point)).collect()
+    }
+
+    /// The first days on which a point would be too warm if a release is held.
+    fn first(&self, at: usize, point: usize) -> Option<Timely> {
+        let (site, way) = (self.context.site(), self.ways.get(at)?);
+        let name = &site.river.as_ref()?.points.get(point)?.name;
+        let today = self.courses.get(at)?.get(&self.context.on.date_naive())?;
+        let there = today.points.iter().find(|p| p.point == point)?;
+        let ahead = self.continued(at, point)?;
+        let begins = |date: NaiveDate| date.and_hms_opt(0, 0, 0)?.and_local_timezone(site.offset).single();
+        let run = way.targets.iter().filter(|s| !s.wish).filter_map(|s| {
+            let rule = site.targets.get(s.target).filter(|rule| rule.point == *name)?;
+            Some((s.target, run_above(self.context, rule, &ahead)?))
+        });
+        let (target, run) = run.min_by_key(|(_, run)| run.first)?;
+        let begins = begins(run.first)?;
+        let leave_by = latest(site, &self.context.conditions, way.flow_m3s(), point, begins)?;
+        Some(Timely {
+            which: way.which,
+            point,
+            target,
+            day: run.first,
+            days: run.days,
+            worst: run.worst,
+            // of that day: streams that join make the water faster or slower
+            travel_h: (begins - leave_by).as_seconds_f64() / SECONDS_H,
+            leave_by,
+            late: leave_by < self.context.on,
+            rise_first_h: there.rise_first_h,
+            rise_h: there.rise_h,
+        })
+    }
+
+    /// The days of a point as recorded, and after the record as computed to arrive: until the water of today is there of
+    /// the release now, then of the one that is held.
+    fn continued(&self, at: usize, point: usize) -> Option<Days> {
+        let site = self.context.site();
+        let name = &site.river.as_ref()?.points.get(point)?.name;
+        let recorded = self.context.conditions.observed.get(name).map(|r| &r.temperature_c);
+        let mut readings = recorded.map_or_else(Vec::new, |r| r.readings().to_vec());
+        let end = readings.last().map(|r| r.0);
+        let today = self.context.on.date_naive();
+        let now = self.ways.iter().position(|w| w.which == Which::Now);
+        let earlier = now.and_then(|now| self.courses.get(now)).into_iter().flatten();
+        let earlier = earlier.filter(|(date, _)| **date < today);
+        let held = self.courses.get(at)?.iter().filter(|(date, _)| **date >= today);
+        for (date, course) in earlier.chain(held) {
+            let Some(there) = course.points.iter().find(|p| p.point == point) else { continue };
+            let arrives = arrives(site.offset, *date, there);
+            readings.extend(arrives.filter(|r| end.is_none_or(|end| r.0 > end)));
+        }
+        Some(Series::new(readings).days(site.offset, site.coverage))
+    }
 }
 
 /// When each hour of a day's release is at a point, and its temperature there, C.

@@ -13,6 +13,7 @@ use super::rank::{RankAsked, Shown, rank};
 use super::{Context, Failure, MixAnswer, Word, mix};
 use crate::rank::Progress;
 
+use ahead::Ahead;
 pub use ahead::{Arriving, Timely};
 pub use asked::Window;
 pub use observed::Observed;
@@ -111,7 +112,8 @@ pub fn downstream(
     };
     if let Some(way) = answer.spoken() {
         let windows = asked::windows(context, way);
-        let (days, timely) = (ahead::days(context, &answer.ways), ahead::timely(context, &answer.ways, way));
+        let ahead = Ahead::of(context, &answer.ways);
+        let (days, timely) = (ahead.days(), ahead.timely());
         let flags: Vec<Problem> = way.course.iter().flat_map(|c| c.flags.iter().cloned()).collect();
         answer.notes.extend(flags);
         (answer.windows, answer.days, answer.timely) = (windows, days, timely);

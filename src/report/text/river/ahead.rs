@@ -6,7 +6,7 @@ use unicode_width::UnicodeWidthStr;
 
 use crate::problem::harmless;
 use crate::tasks::Context;
-use crate::tasks::river::{Arriving, RiverAnswer, Timely};
+use crate::tasks::river::{Arriving, RiverAnswer, Timely, Which};
 use crate::units::{Dimension, System, figure};
 
 use super::amounts;
@@ -61,12 +61,14 @@ pub fn days(context: &Context, answer: &RiverAnswer, system: System, width: usiz
     }
     let names = river.points.iter().enumerate().map(|(i, p)| format!("{} {}", i + 1, harmless(&p.name)));
     let names: Vec<String> = names.collect();
+    let hourly = answer.days.iter().flat_map(|d| d.ways.iter().flatten()).any(|f| f.range_c.is_some());
+    let greatest = if hourly { " (greatest)" } else { "" };
     let repeated = if answer.days.iter().any(|d| d.repeated) {
-        "; repeated: the weather ends, that of the day before runs on"
+        "; repeated: weather is missing, that of the day before is taken"
     } else {
         ""
     };
-    out.push(format!("{}; {}, mean (greatest){repeated}", names.join(", "), unit.symbol()));
+    out.push(format!("{}; {}, mean{greatest}{repeated}", names.join(", "), unit.symbol()));
     out
 }
 
@@ -79,8 +81,13 @@ fn figures(day: &Arriving, way: usize, point: usize, system: System) -> String {
     }
 }
 
-/// When a change must leave the dam to be in time, by point.
-pub fn timely_words(context: &Context, answer: &RiverAnswer, system: System) -> Vec<String> {
+/// When a change must leave the dam to be in time, by point; of one release, or of all.
+pub fn timely_words(
+    context: &Context,
+    answer: &RiverAnswer,
+    system: System,
+    of: Option<Which>,
+) -> Vec<String> {
     let site = context.site();
     let points = site.river.as_ref().map_or(&[][..], |r| &r.points);
     let words = |t: &Timely| {
@@ -88,9 +95,10 @@ pub fn timely_words(context: &Context, answer: &RiverAnswer, system: System) -> 
         let (on, value, by) = t.worst;
         let late = if t.late { ", which is past" } else { "" };
         Some(format!(
-            "{}: if this release is held, `{}` is missed for {} from {} (on {} {}, by {}); a change must leave the dam \
+            "{}: if the release {} is held, `{}` is missed there for {} from {} (on {} {}, by {}); a change must leave the dam \
              by {}{late}: its water takes {:.1} h, its rise can be there after {:.1} h, in bulk after {:.1} h",
             harmless(&point.name),
+            t.which.word(),
             harmless(&rule.name),
             super::record::days_of(t.days as f64),
             t.day.format("%m-%d"),
@@ -103,5 +111,5 @@ pub fn timely_words(context: &Context, answer: &RiverAnswer, system: System) -> 
             t.rise_h
         ))
     };
-    answer.timely.iter().filter_map(words).collect()
+    answer.timely.iter().filter(|t| of.is_none_or(|of| t.which == of)).filter_map(words).collect()
 }

@@ -131,7 +131,7 @@ fn needed(context: &Context, answer: &RiverAnswer, system: System) -> String {
             window.point.and_then(|i| points.get(i)).map_or("the dam".to_owned(), |p| harmless(&p.name));
         out.push_str(&wrapped(&format!("  {name}: {}", window_words(window, system)), 4));
     }
-    for words in timely_words(context, answer, system) {
+    for words in timely_words(context, answer, system, None) {
         out.push_str(&wrapped(&format!("  ! {words}"), 4));
     }
     for (i, point) in points.iter().enumerate() {

@@ -136,11 +136,11 @@ fn against_now(answer: &RiverAnswer, points: usize, system: System) -> Vec<Place
         cells: (0..=points).map(|place| cell(place).unwrap_or_else(|| NONE.into())).collect(),
     };
     vec![
-        row("tried less now", "less N", 0, &|place| {
+        row("tried minus now", "minus N", 0, &|place| {
             let by = unit.from_si(warmth(tried, place)? - warmth(now, place)?);
             Some(format!("{} {}", signed(by), unit.symbol()))
         }),
-        row("oxygen less now", "O2 less N", 2, &|place| {
+        row("oxygen, tried - now", "O2 minus N", 2, &|place| {
             Some(format!("{} mg/L", signed(air(tried, place)? - air(now, place)?)))
         }),
     ]

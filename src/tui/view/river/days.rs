@@ -21,7 +21,7 @@ pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
     let mut out = Lines::new();
     say(&mut out, "What arrives day by day, each release held; d or Esc goes back.", width, 2, Role::Quiet);
     out.extend(strip(screen, width));
-    for words in river::timely_words(context, answer, system) {
+    for words in river::timely_words(context, answer, system, None) {
         say(&mut out, &words, width, 2, Role::Warn);
     }
     out

@@ -26,7 +26,8 @@ pub(super) fn lines(screen: &Screen, width: usize, height: usize) -> Lines {
         let role = if window.reachable == Some(false) { Role::Outside } else { Role::Range };
         say(&mut below, &format!("{name} needs {}", river::window_words(window, system)), width, 2, role);
     }
-    for words in river::timely_words(context, answer, system) {
+    let spoken = answer.spoken().map(|way| way.which);
+    for words in river::timely_words(context, answer, system, spoken) {
         say(&mut below, &words, width, 2, Role::Warn);
     }
     let head = usize::from(screen.old) + 1;

@@ -94,7 +94,8 @@ fn soon(screen: &Screen) -> Vec<String> {
         let name = harmless(&rule.name);
         Some(format!("! {place}: `{name}` missed from {day} if held; change by {leave}{late}; d tells more"))
     };
-    answer.timely.iter().filter_map(words).collect()
+    let spoken = answer.spoken().map(|way| way.which);
+    answer.timely.iter().filter(|t| Some(t.which) == spoken).filter_map(words).collect()
 }
 
 /// The release that the place of a rule needs for all its rules, and which set the ends.
