@@ -39,7 +39,9 @@ pub fn range(rule: &Target, system: System) -> String {
         (None, None) => {}
     }
     match &rule.reference {
-        Some(Reference::Natural) => parts.push("from the natural temperature".to_owned()),
+        Some(Reference::Natural) => {
+            parts.push("from the natural temperature (the balance with the air that day)".to_owned())
+        }
         Some(Reference::Stream(name)) => parts.push(format!("from the temperature of {}", harmless(name))),
         None => {}
     }

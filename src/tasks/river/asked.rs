@@ -32,8 +32,8 @@ pub struct Window {
     pub oxygen_min_mg_l: Option<f64>,
     /// The rule that sets it.
     pub oxygen_set_by: Option<usize>,
-    /// Whether a floor is kept by no oxygen of the release.
-    pub breathless: bool,
+    /// Whether its range is kept by no temperature of the release, and its floor by no oxygen.
+    pub out_of_reach: [bool; 2],
     /// Oxygen at saturation below the dam at that temperature, mg/L.
     pub saturation_mg_l: Option<f64>,
     /// What the point asks of its own temperature today, C, all its rules together.
@@ -74,7 +74,7 @@ fn window(context: &Context, way: &Way, point: Option<usize>, rules: &[&RuleToda
         ranged: rules.iter().any(|r| context.site().targets.get(r.target).is_some_and(Target::has_range)),
         oxygen_min_mg_l: None,
         oxygen_set_by: None,
-        breathless: false,
+        out_of_reach: [false; 2],
         saturation_mg_l: None,
         asked_c: [None, None],
         floor_mg_l: None,
@@ -94,8 +94,9 @@ fn window(context: &Context, way: &Way, point: Option<usize>, rules: &[&RuleToda
     out.asked_c = asked(context, way, &out, rules);
     if out.reachable == Some(false) {
         (out.low_c, out.high_c) = (None, None);
+        out.out_of_reach[0] = true;
     }
-    if out.breathless {
+    if out.out_of_reach[1] {
         (out.reachable, out.oxygen_min_mg_l, out.oxygen_set_by) = (Some(false), None, None);
     }
     let nothing = out.low_c.is_none() && out.high_c.is_none() && out.oxygen_min_mg_l.is_none();
@@ -132,7 +133,7 @@ impl Window {
     fn raise(&mut self, target: usize, air: &Air, asked: Result<Breath, String>) {
         match asked {
             Ok(Breath { least_mg_l: None, .. }) => {
-                self.breathless = true;
+                self.out_of_reach[1] = true;
             }
             Ok(Breath { least_mg_l: Some(least), floor_mg_l: floor, saturation_mg_l }) => {
                 self.saturation_mg_l = Some(saturation_mg_l);

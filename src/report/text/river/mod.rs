@@ -12,7 +12,7 @@ use crate::problem::{Problem, Weight, harmless};
 use crate::report::flags_of;
 use crate::site::Surface;
 use crate::tasks::Context;
-use crate::tasks::river::{RiverAnswer, Way, Which};
+use crate::tasks::river::{RiverAnswer, Way, Which, Window};
 use crate::units::System;
 
 use super::{flow, labelled, list, setting_words, wrapped};
@@ -32,7 +32,14 @@ pub(super) fn body(context: &Context, answer: &RiverAnswer) -> String {
     let system = context.system;
     let mut out = String::new();
     for way in &answer.ways {
-        out.push_str(&labelled(title(way.which), &set_words(context, way, system)));
+        let misses = way.targets.iter().filter(|s| s.missed()).count();
+        let nearest = match (way.which, misses) {
+            (Which::Best, 1..) => {
+                "; no mix examined is known to keep every target, this is the first in the order"
+            }
+            _ => "",
+        };
+        out.push_str(&labelled(title(way.which), &format!("{}{nearest}", set_words(context, way, system))));
     }
     let leaves = context.on.format("%Y-%m-%d");
     let of = format!("{}; at points the water that leaves the dam on {leaves}", weather_words(context));
@@ -74,6 +81,9 @@ pub fn weather_words(context: &Context) -> String {
             "given equilibrium temperature and exchange: means of the day".to_owned()
         }
         Some(Surface::Monthly(_)) => "mean weather of the month: means of the day".to_owned(),
+        Some(Surface::File(file)) if weather.last_day().is_none() => {
+            format!("nothing could be read from {}: see below", harmless(file))
+        }
         Some(Surface::File(file)) => {
             let step = if weather.is_hourly() { "hour by hour" } else { "means of the day" };
             let forecast = weather.forecast_from.map_or_else(String::new, |from| {
@@ -129,7 +139,8 @@ fn needed(context: &Context, answer: &RiverAnswer, system: System) -> String {
     for window in &answer.windows {
         let name =
             window.point.and_then(|i| points.get(i)).map_or("the dam".to_owned(), |p| harmless(&p.name));
-        out.push_str(&wrapped(&format!("  {name}: {}", window_words(window, system)), 4));
+        let set = set_by(context, window);
+        out.push_str(&wrapped(&format!("  {name}: {}{set}", window_words(window, system)), 4));
     }
     for words in timely_words(context, answer, system, None) {
         out.push_str(&wrapped(&format!("  ! {words}"), 4));
@@ -141,6 +152,19 @@ fn needed(context: &Context, answer: &RiverAnswer, system: System) -> String {
     }
     out.push('\n');
     out
+}
+
+/// Which rules set the ends of a window.
+fn set_by(context: &Context, window: &Window) -> String {
+    let name = |i: Option<usize>| context.site().targets.get(i?).map(|rule| harmless(&rule.name));
+    let ends = [
+        ("low end", name(window.set_by[0]).filter(|_| window.low_c.is_some())),
+        ("high end", name(window.set_by[1]).filter(|_| window.high_c.is_some())),
+        ("oxygen", name(window.oxygen_set_by)),
+    ];
+    let told = ends.into_iter().filter_map(|(end, rule)| Some(format!("{end} by `{}`", rule?)));
+    let told: Vec<String> = told.collect();
+    if told.is_empty() { String::new() } else { format!(" ({})", told.join(", ")) }
 }
 
 /// Every rule valid on the date with how each release stands.
