@@ -75,7 +75,7 @@ fn places(right: &str, shown: &Shown, answer: &Value) {
             if by.abs() < 0.05 { "0.0".to_owned() } else { format!("{by:+.1}") }
         };
         let cells: Vec<String> = all(tried).iter().zip(&all(now)).map(by).collect();
-        in_order(line(right, "T less N"), &cells);
+        in_order(line(right, "T minus N"), &cells);
     }
 }
 

@@ -134,11 +134,13 @@ fn cells(rule: &Target, system: System) -> [(&'static str, Option<String>); 4] {
         if rule.is_of_temperature() { Dimension::Temperature } else { Dimension::TemperatureDifference };
     let unit = system.unit(dimension);
     let warm = |c: Option<f64>| c.map(|c| format!("{} {}", figure(c, unit, 1), unit.symbol()));
+    let share = rule.oxygen_min_share.map(|share| format!("{:.0} %", 100.0 * share));
+    let air = rule.oxygen_min_mg_l.map(|o| format!("{o:.1} mg/L")).or(share);
     [
         ("low", warm(rule.low_c)),
         ("preferred", warm(rule.preferred_c)),
         ("high", warm(rule.high_c)),
-        ("oxygen", rule.oxygen_min_mg_l.map(|o| format!("{o:.1} mg/L"))),
+        ("oxygen", air),
     ]
 }
 
