@@ -108,7 +108,7 @@ pub(crate) fn scenes() -> Vec<Scene> {
                     ("name: Mill Bridge", &format!("name: {long}")),
                     ("point: Mill Bridge", &format!("point: {long}")),
                     ("name: ford maxima", &format!("name: \"{}\"", "holding and rearing ".repeat(4))),
-                    (LONG, &format!("\"下游渡口下游渡口\", at_km: 18.5")),
+                    (LONG, "\"下游渡口下游渡口\", at_km: 18.5"),
                     ("point: Long Ford", "point: \"下游渡口下游渡口\""),
                     ("Tansy Creek", "the creek that joins on the left below the mill"),
                 ],

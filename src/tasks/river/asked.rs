@@ -203,6 +203,7 @@ fn flows(way: &Way) -> Vec<(f64, f64)> {
 }
 
 /// What a floor at a place asks of the oxygen of the release, mg/L.
+#[expect(clippy::struct_field_names, reason = "units stand in the names")]
 struct Breath {
     /// Least oxygen of the release; `None` where none serves.
     least_mg_l: Option<f64>,

@@ -156,7 +156,9 @@ pub fn window_words(window: &Window, system: System) -> String {
     let unit = system.unit(Dimension::Temperature);
     let shown = |c: f64| temperature(c, system);
     let mut parts = Vec::new();
-    if window.reachable != Some(false) {
+    if window.reachable == Some(false) {
+        parts.push("OUT OF REACH: no release keeps its rules".to_owned());
+    } else {
         match (window.low_c, window.high_c) {
             (Some(low), Some(high)) => parts.push(format!("{} to {}", figure(low, unit, 1), shown(high))),
             (Some(low), None) => parts.push(format!("from {}", shown(low))),
@@ -166,8 +168,6 @@ pub fn window_words(window: &Window, system: System) -> String {
             }
             (None, None) => {}
         }
-    } else {
-        parts.push("OUT OF REACH: no release keeps its rules".to_owned());
     }
     match window.oxygen_min_mg_l {
         Some(least) if least < LEAST_SHOWN_MG_L => parts.push("any oxygen".to_owned()),

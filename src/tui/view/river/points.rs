@@ -23,7 +23,7 @@ pub(super) fn lines(screen: &Screen, width: usize, height: usize) -> Lines {
             || "dam".to_owned(),
             |i| format!("{} {}", i + 1, super::rules::point_name(screen, i)),
         );
-        let role = if window.reachable != Some(false) { Role::Range } else { Role::Outside };
+        let role = if window.reachable == Some(false) { Role::Outside } else { Role::Range };
         say(&mut below, &format!("{name} needs {}", river::window_words(window, system)), width, 2, role);
     }
     for words in river::timely_words(context, answer, system) {
