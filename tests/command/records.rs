@@ -27,7 +27,7 @@ fn scenario_a_record_is_counted_against_its_rule_and_marked() {
     assert_abs_diff_eq!(number(&holding["worst_by_c"]), 1.5, epsilon = 1e-9);
     assert_eq!(holding["months"][0]["of"], "2025-07");
     let text = told(&["river", folder.named()]);
-    let line = format!("3 of 4 days above, by up to 1.5 C (2025-07-10), 2 in a row at most; {PROVISIONAL}");
+    let line = format!("3 of 4 days above, by up to 1.5 C (2025-07-10), at most 2 in a row; {PROVISIONAL}");
     assert!(text.contains(&line), "{text}");
     // every count of every record carries the words, in the demonstrations too
     for demonstration in ["ashlar", "sorrel"] {
