@@ -7,7 +7,7 @@ use chrono::NaiveDate;
 use crate::problem::Problem;
 use crate::units::{Dimension, say};
 
-use super::{OxygenFigure, OxygenStatistic, Span, Standing, Statistic};
+use super::{OxygenFigure, OxygenStatistic, Span, Statistic};
 
 /// The name of the dam among the points.
 pub const DAM: &str = "dam";
@@ -124,7 +124,8 @@ impl Target {
         self.oxygen_min_mg_l.is_some() || self.oxygen_min_share.is_some()
     }
 
-    /// What its floor of oxygen speaks of; where nothing is said, the mean of the day for a daily mean, else the least.
+    /// What its floor of oxygen speaks of; where nothing is said, the mean of the day for a daily mean, else the least
+    /// (choice).
     pub fn oxygen_statistic(&self) -> OxygenStatistic {
         self.oxygen_statistic.unwrap_or(match self.statistic {
             Statistic::DailyMean => OxygenStatistic::DailyMean,
@@ -148,26 +149,6 @@ impl Target {
     /// Upper end of the range the buffer leaves, C.
     pub fn high_kept_c(&self) -> Option<f64> {
         self.high_c.map(|t| t - self.buffer_c)
-    }
-
-    /// Standing of a temperature and how far outside it lies, C (0 inside).
-    pub fn temperature(&self, value_c: Option<f64>) -> (Standing, Option<f64>) {
-        let Some(value) = value_c else { return (Standing::Unknown, None) };
-        match (self.low_kept_c(), self.high_kept_c()) {
-            (None, None) => (Standing::Unknown, None),
-            (Some(low), _) if value < low => (Standing::Below, Some(low - value)),
-            (_, Some(high)) if value > high => (Standing::Above, Some(value - high)),
-            _ => (Standing::Inside, Some(0.0)),
-        }
-    }
-
-    /// Standing of an oxygen concentration and how far below the minimum it lies, mg/L (0 inside).
-    pub fn oxygen(&self, value_mg_l: Option<f64>) -> (Standing, Option<f64>) {
-        match (value_mg_l, self.oxygen_min_mg_l) {
-            (Some(value), Some(least)) if value < least => (Standing::Below, Some(least - value)),
-            (Some(_), Some(_)) => (Standing::Inside, Some(0.0)),
-            _ => (Standing::Unknown, None),
-        }
     }
 
     /// What is wrong with the rule itself; each problem at `path`.
