@@ -98,10 +98,14 @@ impl Target {
     /// Whether it is valid on a date in a water year of a type: within its span, in one of its types of year, and not
     /// after the event that ends it. That event ends only the span it falls in: the next year begins anew.
     pub fn valid_on(&self, date: NaiveDate, year_type: Option<&str>) -> bool {
-        let year = self.years.is_empty() || year_type.is_some_and(|t| self.years.iter().any(|y| y == t));
         let ended =
             self.until.is_some_and(|until| date > until && self.span.began(date) == self.span.began(until));
-        year && !ended && self.span.contains(date)
+        self.holds_in(year_type) && !ended && self.span.contains(date)
+    }
+
+    /// Whether it holds in water years of a type.
+    pub fn holds_in(&self, year_type: Option<&str>) -> bool {
+        self.years.is_empty() || year_type.is_some_and(|t| self.years.iter().any(|y| y == t))
     }
 
     /// Whether its range bounds a temperature: not a difference, not a sum of degrees.

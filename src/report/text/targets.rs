@@ -103,7 +103,7 @@ pub fn standing_words(s: &TargetStanding, rule: &Target, system: System) -> Stri
 
 /// `1 day`, `3 days`
 fn days(count: f64) -> String {
-    let days = if count.round() as i64 == 1 { "day" } else { "days" };
+    let days = if (count - 1.0).abs() < 0.5 { "day" } else { "days" };
     format!("{count:.0} {days}")
 }
 

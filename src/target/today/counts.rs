@@ -109,17 +109,13 @@ pub(super) fn of_days(rule: &Target, date: NaiveDate, most: Most, known: Known) 
     } else {
         (first < began).then(|| format!("days before {began} are not recorded and not counted"))
     };
-    Today {
-        high_c: today.high_c.filter(|_| !is_free),
-        count: Some(count),
-        observed: true,
-        words,
-        ..today
-    }
+    Today { high_c: today.high_c.filter(|_| !is_free), count: Some(count), observed: true, words, ..today }
 }
 
 /// Why a day is held to the range that the rule might have left free.
 fn unrecorded(missing: u32, of: u32) -> String {
     let are = if missing == 1 { "is" } else { "are" };
-    format!("{missing} of the {of} days before {are} not recorded and may lie above: today is held to the range")
+    format!(
+        "{missing} of the {of} days before {are} not recorded and may lie above: today is held to the range"
+    )
 }
