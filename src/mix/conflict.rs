@@ -42,7 +42,14 @@ impl Conflict {
             say::c(self.bounds_c[0], 1),
             say::c(self.bounds_c[1], 1)
         );
-        Problem::flag("conflict", words, "ask who set them which one comes first, and give `priority`")
+        let priority = |i: usize| rule(i).map_or(1, |t| t.priority);
+        let first = usize::from(priority(0) > priority(1));
+        let cure = if priority(0) == priority(1) {
+            "ask who set them which one comes first, and give `priority`".to_owned()
+        } else {
+            format!("`{}` comes first by `priority`: ask who set them whether that is meant", name(first))
+        };
+        Problem::flag("conflict", words, cure)
     }
 }
 

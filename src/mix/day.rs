@@ -82,7 +82,14 @@ fn asked(site: &Site, date: NaiveDate, conditions: Option<&Conditions>) -> Arc<[
         let known = Known { days: known_days, reference: &reference, coverage: site.coverage };
         let points = site.river.as_ref().map_or(&[][..], |river| &river.points);
         let point = points.iter().position(|p| p.name == rule.point).filter(|_| rule.point != DAM);
-        RuleToday { target, point, today: today(rule, date, known), air: Air::of(rule, date, known) }
+        let mut today = today(rule, date, known);
+        if let (Ok(today), Some(Reference::Stream(name))) = (&mut today, &rule.reference)
+            && let Some(from) = of_stream.as_ref().and_then(|days| held_from(days, date))
+        {
+            let held = format!("{name} is taken as on {from}: its record does not tell of this day");
+            today.words = Some(today.words.take().map_or(held.clone(), |words| format!("{words}; {held}")));
+        }
+        RuleToday { target, point, today, air: Air::of(rule, date, known) }
     };
     rules.into_iter().map(one).collect()
 }
@@ -93,6 +100,12 @@ fn stream(site: &Site, reference: &Reference, conditions: Option<&Conditions>) -
     let conditions = conditions?;
     let record = conditions.streams.get(name).or_else(|| conditions.observed.get(name))?;
     Some(record.temperature_c.days(site.offset, site.coverage))
+}
+
+/// The last day of a record that stands for a later one; `None` where it tells of that day, or ends too long before.
+fn held_from(days: &Days, today: NaiveDate) -> Option<NaiveDate> {
+    let (last, _) = days.days.range(..=today).next_back()?;
+    (1..=HELD_DAYS).contains(&(today - *last).num_days()).then_some(*last)
 }
 
 /// The reference of a rule on a day.

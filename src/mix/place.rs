@@ -21,9 +21,17 @@ pub(super) struct Water {
     /// Greatest and least.
     range_c: Option<(f64, f64)>,
     hourly_change_c: Option<f64>,
+    /// Mean and least.
     oxygen_mg_l: [Option<f64>; 2],
-    /// Saturation, mg/L.
-    saturation_mg_l: Option<f64>,
+    /// Saturation, mg/L: what the mean and the least oxygen are divided by to give the mean and the least share of it.
+    saturation_mg_l: [Option<f64>; 2],
+    /// Its greatest and least are known, not its mean alone.
+    by_hour: bool,
+}
+
+/// Which of mean and least.
+fn of(figure: OxygenFigure) -> usize {
+    usize::from(figure == OxygenFigure::Min)
 }
 
 impl Water {
@@ -44,22 +52,31 @@ impl Water {
 
     /// The oxygen that a floor is held against, mg/L.
     pub(super) fn oxygen_mg_l(&self, air: &Air) -> Option<f64> {
-        self.oxygen_mg_l[usize::from(air.figure == OxygenFigure::Min)]
+        self.oxygen_mg_l[of(air.figure)]
     }
 
     /// Its mean or its least oxygen, mg/L.
     pub(super) fn least_mg_l(&self, figure: OxygenFigure) -> Option<f64> {
-        self.oxygen_mg_l[usize::from(figure == OxygenFigure::Min)]
+        self.oxygen_mg_l[of(figure)]
     }
 
     /// The floor of that oxygen, mg/L.
     pub(super) fn floor_mg_l(&self, air: &Air) -> Option<f64> {
-        if air.share { self.saturation_mg_l.map(|s| air.floor_mg_l(s)) } else { Some(air.floor) }
+        if air.share {
+            self.saturation_mg_l[of(air.figure)].map(|s| air.floor_mg_l(s))
+        } else {
+            Some(air.floor)
+        }
     }
 
-    /// Saturation there, mg/L.
-    pub(super) fn saturation_mg_l(&self) -> Option<f64> {
-        self.saturation_mg_l
+    /// Saturation there that its mean or its least oxygen is held against, mg/L.
+    pub(super) fn saturation_mg_l(&self, figure: OxygenFigure) -> Option<f64> {
+        self.saturation_mg_l[of(figure)]
+    }
+
+    /// Whether the mean of the day is all that is known of it.
+    pub(super) fn mean_only(&self) -> bool {
+        !self.by_hour
     }
 }
 
@@ -73,9 +90,21 @@ pub(super) fn at_dam(site: &Site, parts: &[(f64, f64, Option<f64>)], salt_g_per_
     let temperatures = || parts.iter().map(|p| p.1);
     let oxygens: Option<Vec<f64>> = parts.iter().map(|p| p.2).collect();
     let mean_c = parts.iter().map(|p| p.0 * p.1).sum();
-    // the day comes round: its last part is followed by its first
-    let next = temperatures().skip(1).chain(temperatures().take(1));
+    // within the day, as at a point: what the next day begins with is not known
+    let next = temperatures().skip(1);
     let change = temperatures().zip(next).map(|(a, b)| (a - b).abs()).fold(0.0, f64::max);
+    let oxygen_mg_l =
+        [parts.iter().map(|p| Some(p.0 * p.2?)).sum(), oxygens.and_then(|o| o.into_iter().reduce(f64::min))];
+    let full = |t: f64| site.saturation_below_mg_l(t, salt_g_per_kg);
+    let shares = || parts.iter().map(|p| Some((p.0, p.2? / full(p.1))));
+    // a steady day has one saturation
+    let share = match parts {
+        [_] => [None; 2],
+        _ => [
+            shares().map(|s| s.map(|(of_day, share)| of_day * share)).sum(),
+            shares().map(|s| s.map(|s| s.1)).reduce(|a, b| Some(a?.min(b?))).flatten(),
+        ],
+    };
     Water {
         mean_c,
         range_c: Some((
@@ -83,25 +112,38 @@ pub(super) fn at_dam(site: &Site, parts: &[(f64, f64, Option<f64>)], salt_g_per_
             temperatures().fold(f64::INFINITY, f64::min),
         )),
         hourly_change_c: Some(change),
-        oxygen_mg_l: [
-            parts.iter().map(|p| Some(p.0 * p.2?)).sum(),
-            oxygens.and_then(|o| o.into_iter().reduce(f64::min)),
-        ],
-        saturation_mg_l: Some(site.saturation_below_mg_l(mean_c, salt_g_per_kg)),
+        oxygen_mg_l,
+        saturation_mg_l: saturations(oxygen_mg_l, share, full(mean_c)),
+        by_hour: true,
     }
 }
 
 /// Water at a point.
-fn at_point(at: &AtPoint) -> Water {
+fn at_point(site: &Site, at: &AtPoint) -> Water {
     let f = &at.figures;
-    let full = f.oxygen_share.zip(f.oxygen_mean_mg_l).filter(|(share, _)| share.1 > 0.0);
+    let oxygen_mg_l = [f.oxygen_mean_mg_l, f.oxygen_min_mg_l];
+    let share = [f.oxygen_share.map(|s| s.1), f.oxygen_share.map(|s| s.0)];
     Water {
         mean_c: f.mean_c,
         range_c: f.range_c,
         hourly_change_c: f.hourly_change_c,
-        oxygen_mg_l: [f.oxygen_mean_mg_l, f.oxygen_min_mg_l],
-        saturation_mg_l: full.map(|(share, mean)| mean / share.1),
+        oxygen_mg_l,
+        saturation_mg_l: saturations(oxygen_mg_l, share, site.saturation_below_mg_l(f.mean_c, 0.0)),
+        by_hour: f.range_c.is_some(),
     }
+}
+
+/// What oxygen divided by a share of saturation makes saturation; of water without oxygen that of its temperature.
+fn saturations(
+    oxygen_mg_l: [Option<f64>; 2],
+    share: [Option<f64>; 2],
+    by_temperature_mg_l: f64,
+) -> [Option<f64>; 2] {
+    let one = |i: usize| {
+        let by_share = oxygen_mg_l[i].zip(share[i]).filter(|(_, share)| *share > 0.0);
+        Some(by_share.map_or(by_temperature_mg_l, |(oxygen, share)| oxygen / share))
+    };
+    [one(0), one(1)]
 }
 
 /// The places of a day with its release.
@@ -148,7 +190,7 @@ impl<'a> Places<'a> {
     /// The day's water at the dam, or at a point of the river.
     pub(super) fn water(&self, point: Option<usize>) -> Option<Water> {
         let Some(point) = point else { return Some(self.dam) };
-        self.course.as_ref()?.points.iter().find(|p| p.point == point).map(at_point)
+        self.course.as_ref()?.points.iter().find(|p| p.point == point).map(|at| at_point(self.site, at))
     }
 
     /// The same water in a perturbed case: at a point it differs from the central one by what its link makes of the
@@ -181,7 +223,8 @@ impl<'a> Places<'a> {
                 add(middle.oxygen_mg_l[0], aired(link.oxygen_mean)),
                 add(middle.oxygen_mg_l[1], aired(link.oxygen_min)),
             ],
-            saturation_mg_l: middle.saturation_mg_l.map(|s| s + shift(link.saturation_mg_l)),
+            saturation_mg_l: middle.saturation_mg_l.map(|s| Some(s? + shift(link.saturation_mg_l))),
+            by_hour: middle.by_hour,
         })
     }
 }
@@ -195,4 +238,38 @@ fn by_flow(parts: &[Part], of: impl Fn(&Part) -> Option<f64>) -> Option<f64> {
         flow += weight;
     }
     (flow > 0.0).then(|| sum / flow)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::{Water, saturations};
+    use crate::target::{Air, OxygenFigure};
+
+    /// Least 6 mg/L at 60 % and mean 8 mg/L at 90 % of saturation: 70 % of it is 7 mg/L of the least and 6.22 of the
+    /// mean, so the least lies below and the mean does not.
+    #[test]
+    fn scenario_the_least_share_of_saturation_is_that_of_its_own_hour() {
+        let oxygen_mg_l = [Some(8.0), Some(6.0)];
+        let water = Water {
+            mean_c: 15.0,
+            range_c: None,
+            hourly_change_c: None,
+            oxygen_mg_l,
+            saturation_mg_l: saturations(oxygen_mg_l, [Some(0.9), Some(0.6)], 10.0),
+            by_hour: true,
+        };
+        let floor = |figure| {
+            let air = Air { figure, floor: 0.7, share: true, add: 0.0, times: 1.0, observed: false };
+            water.floor_mg_l(&air).unwrap_or(0.0)
+        };
+        assert!((floor(OxygenFigure::Min) - 7.0).abs() < 1e-12);
+        assert!((floor(OxygenFigure::Mean) - 0.7 * 8.0 / 0.9).abs() < 1e-12);
+    }
+
+    /// Water without oxygen lies below a floor over saturation: it is not unknown.
+    #[test]
+    fn scenario_water_without_oxygen_has_a_saturation() {
+        let none = [Some(0.0); 2];
+        assert_eq!(saturations(none, none, 9.5), [Some(9.5); 2]);
+    }
 }

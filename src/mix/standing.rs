@@ -5,7 +5,7 @@
 use crate::problem::Problem;
 use crate::river::AtPoint;
 use crate::site::Site;
-use crate::target::{Basis, Standing, Statistic, Target, Today};
+use crate::target::{Basis, OxygenFigure, Standing, Statistic, Target, Today};
 
 use super::band::Spread;
 use super::blend::Blend;
@@ -133,13 +133,32 @@ fn governing(site: &Site, targets: &[TargetStanding], rooms: &[Option<f64>]) -> 
     known.min_by(|(_, a), (_, b)| (a.0, a.1).cmp(&(b.0, b.1)).then(a.2.total_cmp(&b.2))).map(|(i, _)| i)
 }
 
-/// Whether a rule is held as a wish: it is soft, or a hard rule of smaller priority number leaves it nothing.
+/// Whether a rule is held as a wish: it is soft, or a hard rule of smaller priority number leaves it nothing that is not
+/// itself held as a wish.
 pub fn is_wish(site: &Site, target: usize, conflicts: &[Conflict]) -> bool {
-    let rule = |i: usize| &site.targets[i];
-    let overruled = |c: &Conflict| {
-        c.targets.contains(&target) && c.targets.iter().any(|&t| rule(t).priority < rule(target).priority)
-    };
-    rule(target).soft || conflicts.iter().any(overruled)
+    site.targets.get(target).is_some_and(|rule| rule.soft) || overruled(site, conflicts).contains(&target)
+}
+
+/// The rules that conflicts make wishes, by priority: whoever is overruled overrules nobody.
+fn overruled(site: &Site, conflicts: &[Conflict]) -> Vec<usize> {
+    let mut order: Vec<(u32, usize)> = conflicts
+        .iter()
+        .flat_map(|c| c.targets)
+        .filter_map(|t| Some((site.targets.get(t)?.priority, t)))
+        .collect();
+    order.sort_unstable();
+    order.dedup();
+    let mut out: Vec<usize> = Vec::new();
+    for &(priority, target) in &order {
+        let stands = |&&(first, other): &&(u32, usize)| first < priority && !out.contains(&other);
+        let meets = |other: usize| {
+            conflicts.iter().any(|c| c.targets.contains(&target) && c.targets.contains(&other))
+        };
+        if order.iter().filter(stands).any(|&(_, other)| meets(other)) {
+            out.push(target);
+        }
+    }
+    out
 }
 
 struct Judge<'a> {
@@ -170,7 +189,7 @@ impl Judge<'_> {
         let count = today.zip(figure_c).and_then(|(today, f)| {
             Some(today.count?.with_today(rule.high_kept_c().is_some_and(|high| f > high)))
         });
-        let saturation = water.and_then(|w| w.saturation_mg_l()).filter(|s| *s > 0.0);
+        let saturation = water.and_then(|w| w.saturation_mg_l(rule.oxygen_figure())).filter(|s| *s > 0.0);
         // without a floor the oxygen is still told: the least of the day
         let told = air_today.or_else(|| water.and_then(|w| w.least_mg_l(rule.oxygen_figure())));
         let (share_inside, oxygen_share_inside, share_inside_both) = self.shares(asked, rule);
@@ -277,5 +296,10 @@ fn words(asked: &RuleToday, rule: &Target, water: Option<Water>, figure_c: Optio
     if rule.has_range() && figure_c.is_none() {
         return Some("only the mean of the day is known there: give weather by the hour".into());
     }
-    today.words.clone()
+    let mean_only =
+        water.is_some_and(|w| w.mean_only()) && asked.air.is_some_and(|air| air.figure == OxygenFigure::Min);
+    let oxygen = mean_only
+        .then(|| "only the mean oxygen of the day is known there, and stands for its least: give weather by the hour".to_owned());
+    let words: Vec<String> = today.words.iter().cloned().chain(oxygen).collect();
+    (!words.is_empty()).then(|| words.join("; "))
 }

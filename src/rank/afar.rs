@@ -9,6 +9,7 @@
 
 use crate::mix::{Conflict, Links, RuleToday, conflicts};
 use crate::profile::Column;
+use crate::river::Figures;
 use crate::site::Site;
 use crate::target::{Air, Figure, OxygenFigure, Today};
 
@@ -27,19 +28,20 @@ fn at([a, b, c]: Parabola, t: f64) -> f64 {
 }
 
 /// How the places where rules apply see the releases of a question.
-pub(super) struct Seen {
+pub struct Seen {
     links: Links,
     /// Saturation below the dam, mg/L.
     saturation: Parabola,
 }
 
 impl Seen {
-    /// The links of the day's mean flow, for every temperature the pool can give.
-    pub(super) fn of(question: &Question) -> Self {
+    /// The links of the day's parts, for every temperature the pool can give.
+    pub fn of(question: &Question) -> Self {
         let column = &question.profile.column;
         let (span, salt) = water(column);
-        let mean_m3s: f64 = question.blocks.iter().map(|b| b.0 * b.1).sum();
-        let links = Links::new(question.site, question.day, &[(24.0, mean_m3s)], span);
+        // with blocks the river is carried by the hour: only so its greatest and least of a day are known
+        let flows: Vec<(f64, f64)> = question.blocks.iter().map(|b| (24.0 * b.0, b.1)).collect();
+        let links = Links::new(question.site, question.day, &flows, span);
         let saturation = |t: f64| question.site.saturation_below_mg_l(t, salt);
         let middle = 0.5 * (span.0 + span.1);
         Self { links, saturation: through([span.0, middle, span.1], saturation) }
@@ -47,6 +49,36 @@ impl Seen {
 
     pub(super) fn conflicts(&self, site: &Site, rules: &[RuleToday]) -> Vec<Conflict> {
         conflicts(site, rules, &self.links)
+    }
+
+    /// How far off a point's water lies from what the order took it for: of the temperature that a rule speaks of (C),
+    /// and of its oxygen (mg/L); of the same release as a time mean.
+    pub fn apart(
+        &self,
+        rule: &RuleToday,
+        (release_c, release_mg_l): (f64, Option<f64>),
+        full: &Figures,
+    ) -> (Option<f64>, Option<f64>) {
+        let Some(point) = rule.point else { return (None, None) };
+        let figure = rule.today.as_ref().ok().map(|today| today.figure);
+        let far = |upper: bool| {
+            let told = match figure? {
+                Figure::Mean => full.mean_c,
+                Figure::Max => full.range_c?.0,
+                Figure::Min => full.range_c?.1,
+                Figure::Both => full.range_c.map(|r| if upper { r.0 } else { r.1 })?,
+                Figure::HourlyChange => return None,
+            };
+            Some((self.links.temperature(point, figure?, upper)?.at(release_c) - told).abs())
+        };
+        let link = self.links.get(point);
+        let aired = rule.air.and_then(|air| {
+            let least = air.figure == OxygenFigure::Min;
+            let (curve, slope) = if least { link?.oxygen_min? } else { link?.oxygen_mean? };
+            let told = if least { full.oxygen_min_mg_l? } else { full.oxygen_mean_mg_l? };
+            Some((curve.at(release_c) + slope * release_mg_l? - told).abs())
+        });
+        ([far(false), far(true)].into_iter().flatten().reduce(f64::max), aired)
     }
 }
 

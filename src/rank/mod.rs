@@ -38,6 +38,7 @@ use seats::Level;
 use tries::Kitchen;
 use whole::{Told, hopeless, whole_rules};
 
+pub use afar::Seen;
 pub use curve::{Curve, Curves, Water};
 pub use goal::Criterion;
 pub use ranking::{Extreme, Idea, Ranked, Ranking, Rejected};

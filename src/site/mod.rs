@@ -277,6 +277,16 @@ impl Site {
         self.targets.iter().enumerate().filter(move |(_, rule)| rule.valid_on(date, year_type))
     }
 
+    /// Rules within their span on a date that do not hold all the same: how many by the type of water year, and how many
+    /// because an event has ended them.
+    pub fn targets_off(&self, date: NaiveDate) -> (usize, usize) {
+        let year_type = self.year_type.as_deref();
+        let off = |rule: &&Target| rule.span.contains(date) && !rule.valid_on(date, year_type);
+        let by_year = |rule: &&Target| !rule.holds_in(year_type);
+        let (year, event): (Vec<&Target>, Vec<&Target>) = self.targets.iter().filter(off).partition(by_year);
+        (year.len(), event.len())
+    }
+
     /// What happens to the oxygen of water that leaves through an outlet: on a well, in its conduit.
     pub fn aeration(&self, outlet: usize) -> Option<&Aeration> {
         let outlet = self.outlets.get(outlet)?;

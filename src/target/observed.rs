@@ -51,7 +51,7 @@ pub fn observed(
     let ranged = rule.low_c.is_some() || rule.high_c.is_some();
     let floor = |days: &Days, least: Option<f64>| {
         let least = least?;
-        let statistic = rule.oxygen_statistic.unwrap_or_else(|| rule.statistic.of_oxygen());
+        let statistic = rule.oxygen_statistic();
         Some(hold(&|date| below(statistic.observed(days, date, coverage), least)))
     };
     Observed {
@@ -118,17 +118,6 @@ impl Target {
             (Some(low), _) if known < low => below(value, low),
             (_, Some(high)) => above(value, high),
             _ => Mark { value, standing: Standing::Inside, by: Some(0.0) },
-        }
-    }
-}
-
-impl Statistic {
-    /// What an oxygen floor speaks of where it does not say: the mean where the temperature's rule speaks of a daily
-    /// mean, else the least reading (choice).
-    pub fn of_oxygen(self) -> OxygenStatistic {
-        match self {
-            Self::DailyMean => OxygenStatistic::DailyMean,
-            _ => OxygenStatistic::DailyMin,
         }
     }
 }

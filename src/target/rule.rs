@@ -7,7 +7,7 @@ use chrono::NaiveDate;
 use crate::problem::Problem;
 use crate::units::{Dimension, say};
 
-use super::{OxygenFigure, OxygenStatistic, Span, Standing, Statistic};
+use super::{OxygenFigure, OxygenStatistic, Span, Statistic};
 
 /// The name of the dam among the points.
 pub const DAM: &str = "dam";
@@ -98,10 +98,14 @@ impl Target {
     /// Whether it is valid on a date in a water year of a type: within its span, in one of its types of year, and not
     /// after the event that ends it. That event ends only the span it falls in: the next year begins anew.
     pub fn valid_on(&self, date: NaiveDate, year_type: Option<&str>) -> bool {
-        let year = self.years.is_empty() || year_type.is_some_and(|t| self.years.iter().any(|y| y == t));
         let ended =
             self.until.is_some_and(|until| date > until && self.span.began(date) == self.span.began(until));
-        year && !ended && self.span.contains(date)
+        self.holds_in(year_type) && !ended && self.span.contains(date)
+    }
+
+    /// Whether it holds in water years of a type.
+    pub fn holds_in(&self, year_type: Option<&str>) -> bool {
+        self.years.is_empty() || year_type.is_some_and(|t| self.years.iter().any(|y| y == t))
     }
 
     /// Whether its range bounds a temperature: not a difference, not a sum of degrees.
@@ -124,7 +128,8 @@ impl Target {
         self.oxygen_min_mg_l.is_some() || self.oxygen_min_share.is_some()
     }
 
-    /// What its floor of oxygen speaks of; where nothing is said, the mean of the day for a daily mean, else the least.
+    /// What its floor of oxygen speaks of; where nothing is said, the mean of the day for a daily mean, else the least
+    /// (choice).
     pub fn oxygen_statistic(&self) -> OxygenStatistic {
         self.oxygen_statistic.unwrap_or(match self.statistic {
             Statistic::DailyMean => OxygenStatistic::DailyMean,
@@ -148,26 +153,6 @@ impl Target {
     /// Upper end of the range the buffer leaves, C.
     pub fn high_kept_c(&self) -> Option<f64> {
         self.high_c.map(|t| t - self.buffer_c)
-    }
-
-    /// Standing of a temperature and how far outside it lies, C (0 inside).
-    pub fn temperature(&self, value_c: Option<f64>) -> (Standing, Option<f64>) {
-        let Some(value) = value_c else { return (Standing::Unknown, None) };
-        match (self.low_kept_c(), self.high_kept_c()) {
-            (None, None) => (Standing::Unknown, None),
-            (Some(low), _) if value < low => (Standing::Below, Some(low - value)),
-            (_, Some(high)) if value > high => (Standing::Above, Some(value - high)),
-            _ => (Standing::Inside, Some(0.0)),
-        }
-    }
-
-    /// Standing of an oxygen concentration and how far below the minimum it lies, mg/L (0 inside).
-    pub fn oxygen(&self, value_mg_l: Option<f64>) -> (Standing, Option<f64>) {
-        match (value_mg_l, self.oxygen_min_mg_l) {
-            (Some(value), Some(least)) if value < least => (Standing::Below, Some(least - value)),
-            (Some(_), Some(_)) => (Standing::Inside, Some(0.0)),
-            _ => (Standing::Unknown, None),
-        }
     }
 
     /// What is wrong with the rule itself; each problem at `path`.

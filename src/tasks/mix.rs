@@ -80,6 +80,7 @@ fn answer(
         return Err(Failure::Refused(vec![problem], context.system));
     };
     mix.warnings.extend(understood.notes);
+    mix.warnings.extend(context.rules_off());
     let (now, why_not) = judged_now(context, perturbed, &understood.setting);
     mix.warnings.extend(why_not);
     let change = now.as_ref().map(|(now, was)| {

@@ -154,6 +154,16 @@ impl Context {
         Day::new(self.site(), self.on.date_naive(), self.conditions.clone())
     }
 
+    /// How many rules of this season do not hold today, and why; `None` where all do.
+    pub fn rules_off(&self) -> Option<Problem> {
+        let (year, event) = self.site().targets_off(self.on.date_naive());
+        let one = |count: usize, why: &str| (count > 0).then(|| format!("{count} {why}"));
+        let counted = [one(year, "by the type of water year"), one(event, "ended by an event")];
+        let counted: Vec<String> = counted.into_iter().flatten().collect();
+        let words = format!("rules of this season that do not hold today: {}", counted.join(", "));
+        (!counted.is_empty()).then(|| Problem::note("rules-off", words))
+    }
+
     /// A site with a cast of it and a decision date.
     fn of(
         folder: Folder,

@@ -155,6 +155,13 @@ const FLAGGED: &[Case] = &[
         "targets[0].until",
         "holds to the end of its span",
     ),
+    (
+        "point: dam }",
+        "point: dam, years: [drry, wet] }\nyear_type: dry",
+        "year-off",
+        "targets[0].years",
+        "it is `dry`, and `years` says `drry`, `wet`",
+    ),
     ("[40, 5.0e6, 9.1e7, 200]", "[40, 5.0e6, 1.2e8, 200]", "volume-area", "pool.table[2]", "volume"),
     ("cold_water: [12]", "cold_water: [12]\nname2: x", "unknown-key", "name2", "unknown key"),
     ("place: { altitude: 410, latitude: 44.1 }\n", "", "altitude-unknown", "place", "sea level"),

@@ -133,3 +133,126 @@ fn scenario_rank_lists_the_points_and_orders_by_them() {
         epsilon = 1e-9
     );
 }
+
+/// The site with other rules than its own.
+fn alone(rules: &str, more: &str) -> Folder {
+    let folder = ruled(rules);
+    let site = std::fs::read_to_string(folder.site_file()).unwrap();
+    let holding = site.lines().find(|l| l.contains("name: holding")).unwrap().to_owned() + "\n";
+    let site = with(&with(&site, &holding, ""), "cold_water:", &format!("{more}cold_water:"));
+    std::fs::write(folder.site_file(), site).unwrap();
+    folder
+}
+
+/// Blocks bring hours, so the greatest of the day at the bridge is known and ordered by: mixes inside come first.
+#[test]
+fn scenario_with_blocks_rank_orders_by_the_greatest_of_the_day_at_a_point() {
+    let blocks = "blocks: [ { name: peak, hours: 6, flow: 60 }, { name: off-peak, hours: 18, flow: 20 } ]\n";
+    let rule = "  - { name: warmest, point: Mill Bridge, statistic: daily_max, high: 12 }\n";
+    let folder = alone(rule, blocks);
+    let answer = run(&["rank", folder.named(), "--step", "5%", "--top", "50", "--json"]).json();
+    let mixes = answer["mixes"].as_array().unwrap();
+    let by_c: Vec<f64> = mixes.iter().map(|mix| number(&target(mix, "warmest")["by_c"])).collect();
+    assert!(by_c[0] <= 0.0 && by_c.iter().any(|c| *c > 0.5), "{by_c:?}");
+    let apart = number(&answer["largest_difference_c"]);
+    // of misses more than a bin and twice that difference apart the smaller comes first
+    for (i, first) in by_c.iter().enumerate() {
+        assert!(by_c[i..].iter().all(|c| *c > first - 0.5 - 2.0 * apart), "{by_c:?}");
+    }
+    assert!(apart > 0.0 && apart < 0.5, "{apart}");
+}
+
+/// 18 at most comes first, 20 at least is overruled by it, and so leaves 17 at most as it is.
+#[test]
+fn scenario_a_rule_that_is_overruled_overrules_none() {
+    let folder = alone(
+        "  - { name: first, high: 18 }
+  - { name: second, low: 20, priority: 2 }
+  - { name: third, high: 17, priority: 3 }\n",
+        "",
+    );
+    let set = ["mix", folder.named(), "--set", "N1=15", "--set", "Sluice=5"];
+    let answer = run(&[&set[..], &["--json"]].concat()).json();
+    let wishes = ["first", "second", "third"].map(|name| target(&answer, name)["held_as_wish"].clone());
+    assert_eq!(wishes, [false, true, false].map(Value::from));
+    assert_eq!(answer["conflicts"].as_array().unwrap().len(), 2);
+    let text = run(&set).out.split_whitespace().collect::<Vec<_>>().join(" ");
+    assert!(text.contains("held as a wish") && text.contains("leave no temperature at the dam in common"));
+}
+
+#[test]
+fn scenario_rules_of_other_water_years_are_said_to_be_off() {
+    let folder = alone(
+        "  - { name: any, high: 18 }
+  - { name: wet, low: 20, years: [wet] }
+  - { name: mistyped, low: 20, years: [drry] }
+  - { name: over, high: 20, until: 2025-07-01 }\n",
+        "year_type: dry\n",
+    );
+    let words =
+        "rules of this season that do not hold today: 2 by the type of water year, 1 ended by an event";
+    let set = ["mix", folder.named(), "--on", "2025-07-15", "--set", "N1=15"];
+    let mix = run(&set).out.split_whitespace().collect::<Vec<_>>().join(" ");
+    assert!(mix.contains(words), "{mix}");
+    let rank = run(&["rank", folder.named(), "--on", "2025-07-15", "--release", "20"]).out;
+    let rank = rank.split_whitespace().collect::<Vec<_>>().join(" ");
+    assert!(rank.contains(words), "{rank}");
+    let none = run(&["mix", folder.named(), "--on", "2025-06-15", "--set", "N1=15", "--json"]).json();
+    let notes = none["warnings"].as_array().unwrap();
+    let off = notes.iter().find(|w| w["kind"] == "rules-off").unwrap();
+    assert!(!off["text"].as_str().unwrap().contains("event"), "{off}");
+}
+
+/// Without hours the least oxygen of the day at the bridge is its mean, and that is said; at the dam it is known.
+#[test]
+fn scenario_the_least_oxygen_without_hours_is_said_to_be_the_mean() {
+    let folder = alone(
+        "  - { name: bridge, point: Mill Bridge, oxygen_min: 6, oxygen_statistic: daily_min }
+  - { name: mean, point: Mill Bridge, oxygen_min: 6, oxygen_statistic: daily_mean }
+  - { name: below, oxygen_min: 6, oxygen_statistic: daily_min }\n",
+        "",
+    );
+    let answer = run(&["mix", folder.named(), "--set", "N1=15", "--json"]).json();
+    let told = ["bridge", "mean", "below"].map(|name| target(&answer, name)["words"].clone());
+    assert!(told[0].as_str().unwrap().contains("only the mean oxygen of the day is known"), "{told:?}");
+    assert_eq!((&told[1], &told[2]), (&Value::Null, &Value::Null));
+}
+
+/// A stream whose record ends the day before is held, and said to be.
+#[test]
+fn scenario_a_reference_that_is_held_over_is_said_to_be() {
+    let hours = |days: std::ops::RangeInclusive<u32>| {
+        let hour = |i: u32| format!("2025-07-{:02}T{:02}:00,15\n", i / 24, i % 24);
+        let rows: String = (days.start() * 24..(days.end() + 1) * 24).map(hour).collect();
+        format!("time,temperature_C\n{rows}")
+    };
+    let folder = ruled("  - { name: cooling, reference: Tansy Creek, high: -1 }\n");
+    let site = std::fs::read_to_string(folder.site_file()).unwrap();
+    let stream = "travel_hours: [[20, 9], [60, 5]], inflows: [ { name: Tansy Creek, at_km: 12, flow: 3, series: tansy.csv } ] }";
+    let site = with(&site, "travel_hours: [[20, 9], [60, 5]] }", stream);
+    std::fs::write(folder.site_file(), site).unwrap();
+    let cooling = |days| {
+        std::fs::write(folder.site_file().with_file_name("tansy.csv"), hours(days)).unwrap();
+        let answer = run(&["mix", folder.named(), "--on", "2025-07-14", "--set", "N1=15", "--json"]).json();
+        target(&answer, "cooling").clone()
+    };
+    assert_eq!(cooling(12..=14)["words"], Value::Null);
+    let held = cooling(10..=12);
+    assert!(held["words"].as_str().unwrap().contains("Tansy Creek is taken as on 2025-07-12"), "{held}");
+    assert_eq!(held["standing"], "inside");
+    assert_eq!(cooling(8..=10)["standing"], "unknown");
+}
+
+/// Three blocks of rising flow: the change from the last back to the first is over midnight, and not of this day.
+#[test]
+fn scenario_the_change_within_a_day_does_not_run_over_midnight() {
+    let blocks = "blocks: [ { name: low, hours: 8, flow: 10 }, { name: middle, hours: 8, flow: 30 }, { name: high, hours: 8, flow: 80 } ]\n";
+    let folder = alone("  - { name: steps, statistic: hourly_change, high: 1 }\n", blocks);
+    let answer = run(&["rank", folder.named(), "--step", "10%", "--json"]).json();
+    let mix = &answer["mixes"][0];
+    let parts = mix["blocks"].as_array().unwrap();
+    let c: Vec<f64> = parts.iter().map(|part| number(&part["release"]["temperature_c"])).collect();
+    let [first, second] = [(c[1] - c[0]).abs(), (c[2] - c[1]).abs()];
+    assert!((c[2] - c[0]).abs() > first.max(second) + 1e-3, "{c:?}");
+    assert_abs_diff_eq!(number(&target(mix, "steps")["value_c"]), first.max(second), epsilon = 1e-9);
+}

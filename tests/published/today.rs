@@ -116,6 +116,71 @@ fn scenario_days_in_a_row_bind_today_only_when_those_before_were_above() {
     ends(&of, None, Some(20.0));
 }
 
+/// Of two days before today above 20 and one between them not recorded, today may be the fourth in a row.
+#[test]
+fn scenario_a_day_not_recorded_may_belong_to_a_row() {
+    let gap = record(&[Some(21.0), None, Some(21.0)]);
+    let of = asks(&rule(Statistic::DaysInARow(3), None, Some(20.0)), &gap);
+    ends(&of, None, Some(20.0));
+    assert!(of.words.unwrap().contains("1 of the 2 days before is not recorded"));
+    let of = asks(&rule(Statistic::DaysInARow(4), None, Some(20.0)), &gap);
+    ends(&of, None, Some(20.0));
+    assert!(of.words.unwrap().contains("1 of the 3 days before is not recorded"));
+    // five it cannot be where the day before those three lay below
+    let below = record(&[Some(19.0), Some(21.0), None, Some(21.0)]);
+    let of = asks(&rule(Statistic::DaysInARow(5), None, Some(20.0)), &below);
+    ends(&of, None, None);
+    assert_eq!((of.observed, of.words), (true, None));
+    // yesterday missing after a day below: today is the second at most
+    let of = asks(&rule(Statistic::DaysInARow(3), None, Some(20.0)), &record(&[Some(19.0), None]));
+    ends(&of, None, None);
+}
+
+/// Nine days of a span before today, the first and the last recorded and above: with today three are certain, and ten
+/// are possible.
+#[test]
+fn scenario_days_not_recorded_may_use_up_what_is_allowed() {
+    let span = Span { from: YearDay::parse("07-06").unwrap(), to: YearDay::parse("09-30").unwrap() };
+    let days = |most| Target { span, ..rule(Statistic::DaysAbove(most), None, Some(20.0)) };
+    let mut maxima = [None; 9];
+    (maxima[0], maxima[8]) = (Some(21.0), Some(21.0));
+    let ends_only = record(&maxima);
+    for (most, high, words) in [
+        (1, Some(20.0), Some("whatever today brings")),
+        (2, Some(20.0), None),
+        (3, Some(20.0), Some("7 of the 9 days before are not recorded")),
+        (9, Some(20.0), Some("7 of the 9 days before are not recorded")),
+        (10, None, None),
+    ] {
+        let of = asks(&days(most), &ends_only);
+        ends(&of, None, high);
+        let told = of.words.unwrap_or_default();
+        assert!(words.map_or(told.is_empty(), |words| told.contains(words)), "{most}: {told}");
+    }
+    // two of nine days are too few for a share of them
+    let half = Target { span, ..rule(Statistic::ShareOfDays(1.0), None, Some(20.0)) };
+    let of = asks(&half, &ends_only);
+    ends(&of, None, Some(20.0));
+    assert!(of.words.unwrap().contains("not recorded"));
+    // what lies before the record is not counted, and that is said
+    let of = asks(&days(3), &all(&[21.0, 19.0]));
+    ends(&of, None, None);
+    assert!(of.words.unwrap().contains("days before 2026-07-13 are not recorded"));
+}
+
+/// A buffer of a degree keeps today at 19; the days before count as the rule has it, so 19.5 is none above 20.
+#[test]
+fn scenario_a_buffer_does_not_count_against_the_days_before() {
+    let buffered = |statistic| Target { buffer_c: 1.0, ..rule(statistic, None, Some(20.0)) };
+    let of = asks(&buffered(Statistic::DaysInARow(2)), &all(&[19.5]));
+    ends(&of, None, None);
+    let of = asks(&buffered(Statistic::DaysInARow(2)), &all(&[20.5]));
+    ends(&of, None, Some(19.0));
+    let of = asks(&buffered(Statistic::DaysAbove(1)), &all(&[19.5, 19.5]));
+    assert_eq!(of.count.unwrap().above, 0);
+    ends(&of, None, None);
+}
+
 /// A span from 6 July has nine days before 15 July. One of them above is a tenth with today below; one more is a fifth.
 #[test]
 fn scenario_a_share_of_days_binds_today_when_it_is_used_up() {

@@ -106,6 +106,12 @@ pub fn standing_words(s: &TargetStanding, rule: &Target, system: System) -> Stri
     [warm, aired].into_iter().flatten().collect::<Vec<_>>().join(", ")
 }
 
+/// `1 day`, `3 days`
+fn days(count: f64) -> String {
+    let days = if (count - 1.0).abs() < 0.5 { "day" } else { "days" };
+    format!("{count:.0} {days}")
+}
+
 /// What is held against a target, where that is not simply the release: `mean 57.3 F, oxygen 8.1 mg/L`.
 pub(super) fn value_words(s: &TargetStanding, rule: &Target, system: System) -> Option<String> {
     let (one, _) = in_words(rule, system);
@@ -113,11 +119,8 @@ pub(super) fn value_words(s: &TargetStanding, rule: &Target, system: System) -> 
     let warm = s.value_c.filter(|_| !plain && rule.has_range()).map(one);
     let count = s.count.map(|count| match rule.statistic {
         Statistic::ShareOfDays(_) => format!("with today {count:.0} % of days above"),
-        Statistic::DaysInARow(_) => {
-            let days = if count < 1.5 && count > 0.5 { "day" } else { "days" };
-            format!("with today {count:.0} {days} in a row above")
-        }
-        _ => format!("with today {count:.0} days above"),
+        Statistic::DaysInARow(_) => format!("with today {} in a row above", days(count)),
+        _ => format!("with today {} above", days(count)),
     });
     let share = s.oxygen_share.filter(|_| rule.oxygen_min_share.is_some());
     let aired = match (s.oxygen_mg_l.filter(|_| rule.has_floor() && rule.point != DAM), share) {

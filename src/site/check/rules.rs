@@ -102,6 +102,12 @@ pub(super) fn target(raw: &Raw, i: usize, problems: &mut Vec<Problem>) -> Option
         let words = "the rule holds in some water years, and the site does not say which this is".to_owned();
         of.refuse("year-type", "years", words, "give year_type of the site");
     }
+    if let Some(this) = raw.year_type.as_ref().filter(|this| !t.years.is_empty() && !t.years.contains(this)) {
+        let years = t.years.join("`, `");
+        let words =
+            format!("the rule does not hold this water year: it is `{this}`, and `years` says `{years}`");
+        of.problems.push(Problem::note("year-off", words).at(format!("{}.years", of.path)));
+    }
     if t.priority == Some(0) {
         let words = "0 is no priority".to_owned();
         of.refuse("priority", "priority", words, "1 comes first; give 1 or more");

@@ -1,10 +1,13 @@
 //! Rules that count days above their range: today is bound only where one more would be too many.
 //!
+//! The days before are counted above the rule itself, as a record is; the buffer is kept from today alone. A day that is
+//! not recorded may have lain above: today is free only where even that leaves room.
+//!
 //! Methods: `docs/methods.md`, section 7.
 
 use chrono::NaiveDate;
 
-use crate::series::Day;
+use crate::series::{Days, exceeds};
 use crate::target::Target;
 
 use super::{Figure, Known, Today, before};
@@ -40,51 +43,79 @@ impl Count {
 /// So many days in a row above are outside; fewer are not.
 pub(super) fn in_a_row(rule: &Target, date: NaiveDate, days: u32, known: Known) -> Today {
     let today = Today::of(rule, Figure::Max);
-    let (Some(record), Some(high)) = (known.days, rule.high_kept_c()) else { return today };
-    let record = &record.temperature_c.days;
-    let is_above =
-        |back: &u32| before(date, *back).and_then(|day| record.get(&day)).is_some_and(|d| d.max > high);
-    if before(date, 1).is_none_or(|yesterday| !record.contains_key(&yesterday)) {
+    let (Some(record), Some(high), Some(yesterday)) = (known.days, rule.high_c, before(date, 1)) else {
         return today;
+    };
+    let record = &record.temperature_c;
+    let above = record.run_above(yesterday, high);
+    if above.saturating_add(1) >= days {
+        let count = Some(Count { above, of: days, share: false });
+        return Today { count, observed: true, ..today };
     }
-    let above = (1..=date_span(record, date)).take_while(is_above).count();
-    let above = u32::try_from(above).unwrap_or(u32::MAX);
-    // where the row ends at a day without a record it may be longer
-    let count = Some(Count { above, of: days, share: false });
-    let free = above.saturating_add(1) < days;
-    Today { high_c: today.high_c.filter(|_| !free), count, observed: true, ..today }
+    // a day that ends the row because it is not recorded may belong to it, and so may those before it
+    let most = (1..days).take_while(|back| may_be_above(record, date, *back, high)).count();
+    let is_free = most as u64 + 1 < u64::from(days);
+    let count = record.on(yesterday).map(|_| Count { above, of: days, share: false });
+    let earlier = days.saturating_sub(1);
+    let recorded = before(date, earlier).map_or(0, |first| record.between(first, yesterday, |_| 0.0).valid);
+    let words = (!is_free).then(|| unrecorded(earlier.saturating_sub(recorded), earlier));
+    Today {
+        high_c: today.high_c.filter(|_| !is_free),
+        observed: is_free || count.is_some(),
+        count,
+        words,
+        ..today
+    }
 }
 
-/// Days from the first of a record to a date.
-fn date_span(record: &std::collections::BTreeMap<NaiveDate, Day>, date: NaiveDate) -> u32 {
-    let first = record.keys().next().copied().unwrap_or(date);
-    u32::try_from((date - first).num_days()).unwrap_or(0)
+/// Whether the day so long before may have lain above: it did, or it is not recorded.
+fn may_be_above(record: &Days, date: NaiveDate, back: u32, high: f64) -> bool {
+    let day = before(date, back).and_then(|day| record.on(day));
+    day.is_none_or(|day| exceeds(day.max, high))
 }
 
 /// So many days of the span, or such a share of them, may lie above.
 pub(super) fn of_days(rule: &Target, date: NaiveDate, most: Most, known: Known) -> Today {
     let today = Today::of(rule, Figure::Max);
-    let (Some(record), Some(high), Some(first)) = (known.days, rule.high_kept_c(), rule.span.began(date))
-    else {
+    let (Some(record), Some(high), Some(first)) = (known.days, rule.high_c, rule.span.began(date)) else {
         return today;
     };
-    let days: Vec<bool> =
-        record.temperature_c.days.range(first..date).map(|(_, day)| day.max > high).collect();
-    let number = |count: usize| u32::try_from(count).unwrap_or(u32::MAX);
-    let (above, of) = (number(days.iter().filter(|above| **above).count()), number(days.len()));
-    if of == 0 {
+    let record = &record.temperature_c;
+    let (Some(yesterday), Some(began)) = (before(date, 1), record.days.keys().next().copied()) else {
+        return today;
+    };
+    // what came before the record is not held against the rule, as it is not where the record itself is judged
+    let counted = record.count_above(first.max(began), yesterday, high);
+    if counted.valid == 0 {
         return today;
     }
-    let count = Count { above, of, share: matches!(most, Most::Share(_)) };
-    let with_one_more = count.with_today(true);
-    let free = match most {
-        Most::Days(most) => with_one_more <= f64::from(most),
-        Most::Share(most) => with_one_more <= 100.0 * most + 1e-9,
+    let count = Count { above: counted.above, of: counted.valid, share: matches!(most, Most::Share(_)) };
+    let (is_free, is_used_up, is_known) = match most {
+        Most::Days(most) => {
+            let could_be = counted.above.saturating_add(counted.unknown());
+            (could_be < most, counted.above > most, could_be < most || counted.above >= most)
+        }
+        Most::Share(most) => {
+            let is_known = counted.valid + 1 >= known.enough(counted.days + 1);
+            let is_used_up = f64::from(counted.above) > most * (f64::from(counted.valid) + 1.0) + 1e-9;
+            let has_room = count.with_today(true) <= 100.0 * most + 1e-9;
+            (is_known && has_room, is_known && is_used_up, is_known)
+        }
     };
-    let used_up = match most {
-        Most::Days(most) => above > most,
-        Most::Share(most) => f64::from(above) > most * (f64::from(of) + 1.0) + 1e-9,
+    let words = if is_used_up {
+        Some("more days lie above than the rule allows, whatever today brings".to_owned())
+    } else if !is_known {
+        Some(unrecorded(counted.unknown(), counted.days))
+    } else {
+        (first < began).then(|| format!("days before {began} are not recorded and not counted"))
     };
-    let words = used_up.then(|| "more days lie above than the rule allows, whatever today brings".to_owned());
-    Today { high_c: today.high_c.filter(|_| !free), count: Some(count), observed: true, words, ..today }
+    Today { high_c: today.high_c.filter(|_| !is_free), count: Some(count), observed: true, words, ..today }
+}
+
+/// Why a day is held to the range that the rule might have left free.
+fn unrecorded(missing: u32, of: u32) -> String {
+    let are = if missing == 1 { "is" } else { "are" };
+    format!(
+        "{missing} of the {of} days before {are} not recorded and may lie above: today is held to the range"
+    )
 }

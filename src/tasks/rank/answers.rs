@@ -3,7 +3,7 @@
 
 use crate::mix::limits::Check;
 use crate::mix::{Asked, Gate};
-use crate::rank::{Criterion, Progress, Question, Ranked, Ranking, rank as search};
+use crate::rank::{Criterion, Progress, Question, Ranked, Ranking, Seen, rank as search};
 use crate::tasks::solve::{preferred_c, roots};
 
 use super::kitchen::Kitchen;
@@ -186,7 +186,8 @@ impl Answers<'_> {
             .collect()
     }
 
-    /// Largest differences between what the search took a mix for and what it is, C and mg/L.
+    /// Largest differences between what the search took a mix for and what it is, C and mg/L: of the release, and of
+    /// what rules speak of at the points.
     pub(super) fn apart(&self, mixes: &[(&Ranked, Shown)], trade: &[Trade]) -> (f64, Option<f64>) {
         let shown = mixes.iter().map(|(quick, full)| (*quick, full.temperature_c, full.oxygen_mg_l));
         let traded = trade.iter().map(|t| (&t.mix, t.temperature_c, t.oxygen_mg_l));
@@ -200,6 +201,17 @@ impl Answers<'_> {
             apart_c = apart_c.max((t - quick.temperature_c).abs());
             if let Some((full, quick)) = o.zip(quick.oxygen_mg_l) {
                 apart_mg_l = Some(apart_mg_l.unwrap_or(0.0).max((full - quick).abs()));
+            }
+        }
+        let rules = self.question.day.rules(self.question.site);
+        if rules.iter().any(|rule| rule.point.is_some()) {
+            let seen = Seen::of(self.question);
+            for (rule, (quick, full)) in rules.iter().flat_map(|rule| mixes.iter().map(move |m| (rule, m))) {
+                let there = full.points.iter().find(|at| Some(at.point) == rule.point);
+                let release = (quick.temperature_c, quick.oxygen_mg_l);
+                let (c, mg_l) = there.map_or((None, None), |at| seen.apart(rule, release, &at.figures));
+                apart_c = apart_c.max(c.unwrap_or(0.0));
+                apart_mg_l = mg_l.map(|far| apart_mg_l.unwrap_or(0.0).max(far)).or(apart_mg_l);
             }
         }
         (apart_c, apart_mg_l)

@@ -1,4 +1,4 @@
-//! The water where rules apply, mix by mix: at a point by its link to the day's mean flow.
+//! The water where rules apply, mix by mix: at a point by its link to the parts of the day.
 
 use gatemix::mix::{Conflict, Links, conflicts};
 use gatemix::rank::Question;
@@ -20,8 +20,8 @@ impl Afar {
         let warm = || column.nodes_m().iter().map(|&z| column.reading(z).temperature_c);
         let low = warm().fold(f64::INFINITY, f64::min) - BESIDE_C;
         let high = warm().fold(f64::NEG_INFINITY, f64::max) + BESIDE_C;
-        let flow: f64 = question.blocks.iter().map(|b| b.0 * b.1).sum();
-        let links = Links::new(question.site, question.day, &[(24.0, flow)], (low, high));
+        let flows: Vec<(f64, f64)> = question.blocks.iter().map(|b| (24.0 * b.0, b.1)).collect();
+        let links = Links::new(question.site, question.day, &flows, (low, high));
         let conflicts = conflicts(question.site, &question.day.rules(question.site), &links);
         let salt = column.reading(0.5 * (column.bed_m() + column.surface_m())).salt_g_per_kg;
         let at = |t: f64| (t, question.site.saturation_below_mg_l(t, salt));
