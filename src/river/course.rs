@@ -27,6 +27,18 @@ pub struct Part {
     pub oxygen_mg_l: Option<f64>,
 }
 
+/// How finely a day was carried down.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum By {
+    /// One parcel for the day.
+    Day,
+    /// Each hour by itself for the blocks of the release, under air that is not known by the hour: greatest, least and
+    /// change lack the day's cycle of the air.
+    Blocks,
+    /// Each hour by itself, under its own air.
+    Hours,
+}
+
 /// What arrives at a point.
 #[derive(Debug, Clone, PartialEq)]
 pub struct AtPoint {
@@ -36,10 +48,12 @@ pub struct AtPoint {
     pub figures: Figures,
     /// Hours the water takes from the dam, by the mean flow of the day.
     pub travel_h: f64,
-    /// Hours before which a change of flow cannot arrive.
+    /// Hours before which a change of flow cannot arrive, by the greatest flow of the day: a larger one is sooner.
     pub rise_first_h: f64,
-    /// Hours its bulk takes.
+    /// Hours its bulk takes, by the greatest flow of the day.
     pub rise_h: f64,
+    /// Least and greatest flow of the day there, with what joined on the way, m3/s.
+    pub flow_range_m3s: (f64, f64),
     /// Temperature by the hour of release, C; empty where only days are known.
     pub hourly_c: Vec<f64>,
 }
@@ -60,6 +74,8 @@ pub struct Course {
     pub points: Vec<AtPoint>,
     /// The river from the dam to its end.
     pub along: Vec<Place>,
+    /// How finely it was carried down.
+    pub by: By,
     /// What to beware of: a travel table held at its end, a coefficient beyond its range, weather that ends.
     pub flags: Vec<Problem>,
 }
@@ -75,11 +91,12 @@ const LOOKS: usize = 80;
 pub fn course(site: &Site, conditions: &Conditions, date: NaiveDate, parts: &[Part]) -> Option<Course> {
     let flows: Vec<(f64, f64)> = parts.iter().map(|p| (p.hours, p.flow_m3s)).collect();
     let run = Run::new(site, conditions, date, &flows, LOOKS)?;
-    let slices = slices(parts, run.river().decay.demand_mg_l, run.by_hour);
+    let slices = slices(parts, run.river().decay.demand_mg_l, run.by_hour());
     let (rows, met) = run.carry(&slices);
     Some(Course {
         points: at_points(&run, &slices, &rows),
         along: along(&run, &slices, &rows),
+        by: run.by,
         flags: run.flags(&met),
     })
 }
@@ -88,26 +105,33 @@ pub fn course(site: &Site, conditions: &Conditions, date: NaiveDate, parts: &[Pa
 pub(super) fn at_points(run: &Run, slices: &[Slice], rows: &[Vec<Seen>]) -> Vec<AtPoint> {
     let day: f64 = slices.iter().map(|s| s.hours).sum();
     let flow = slices.iter().map(|s| s.hours * s.water.flow_m3s).sum::<f64>() / day;
-    let hours = run.hours(flow);
-    let one = |(point, h): (usize, &Hours)| {
+    let greatest = slices.iter().map(|s| s.water.flow_m3s).fold(flow, f64::max);
+    let (hours, rises) = (run.hours(flow), run.hours(greatest));
+    let one = |(point, (water, rise)): (usize, (&Hours, &Hours))| {
         let there = there(rows, |seen| seen.point == Some(point));
+        let figures = Figures::of(slices, &there, run.by_hour(), run.pressure_atm);
+        let flows = there.iter().map(|w| w.flow_m3s);
         AtPoint {
             point,
-            figures: Figures::of(slices, &there, run.by_hour, run.pressure_atm),
-            travel_h: h.water,
-            rise_first_h: h.first,
-            rise_h: h.bulk,
-            hourly_c: if run.by_hour { hourly(slices, &there) } else { Vec::new() },
+            figures,
+            travel_h: water.water,
+            rise_first_h: rise.first,
+            rise_h: rise.bulk,
+            flow_range_m3s: (
+                flows.clone().reduce(f64::min).unwrap_or(figures.flow_m3s),
+                flows.reduce(f64::max).unwrap_or(figures.flow_m3s),
+            ),
+            hourly_c: if run.by_hour() { hourly(slices, &there) } else { Vec::new() },
         }
     };
-    hours.iter().enumerate().map(one).collect()
+    hours.iter().zip(&rises).enumerate().map(one).collect()
 }
 
 fn along(run: &Run, slices: &[Slice], rows: &[Vec<Seen>]) -> Vec<Place> {
     let Some(first) = rows.first() else { return Vec::new() };
     let place = |(i, seen): (usize, &Seen)| {
         let there: Vec<Water> = rows.iter().filter_map(|row| row.get(i)).map(|s| s.water).collect();
-        Place { at_m: seen.at_m, figures: Figures::of(slices, &there, run.by_hour, run.pressure_atm) }
+        Place { at_m: seen.at_m, figures: Figures::of(slices, &there, run.by_hour(), run.pressure_atm) }
     };
     first.iter().enumerate().map(place).collect()
 }

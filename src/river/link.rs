@@ -110,7 +110,7 @@ pub(super) fn figures(
 ) -> Vec<Figures> {
     let part = |&(hours, flow_m3s): &(f64, f64)| Part { hours, flow_m3s, temperature_c, oxygen_mg_l };
     let parts: Vec<Part> = flows.iter().map(part).collect();
-    let slices = slices(&parts, run.river().decay.demand_mg_l, run.by_hour);
+    let slices = slices(&parts, run.river().decay.demand_mg_l, run.by_hour());
     let (rows, _) = run.carry(&slices);
     at_points(run, &slices, &rows).into_iter().map(|p| p.figures).collect()
 }

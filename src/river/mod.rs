@@ -23,7 +23,7 @@ pub use back::{
     Figure, Floor, LeastOxygen, MOST_OXYGEN_MG_L, RELEASES_C, Wanted, Window, latest, least_oxygen, window,
 };
 pub use conditions::Conditions;
-pub use course::{AtPoint, Course, Part, Place, course};
+pub use course::{AtPoint, By, Course, Part, Place, course};
 pub use figures::Figures;
 pub use link::{Curve, Link, links};
 pub use water::HEAT_J_M3_C;

@@ -2,6 +2,8 @@
 //!
 //! Methods: `docs/methods.md`, section 6.
 
+use std::collections::BTreeMap;
+
 use chrono::{DateTime, Datelike, FixedOffset, NaiveDate, NaiveTime, TimeDelta};
 
 use crate::problem::Problem;
@@ -10,11 +12,12 @@ use crate::units::say;
 
 use super::Conditions;
 use super::afterbay;
+use super::course::By;
 use super::hours::{Hours, hours};
 use super::legs::{Leg, Then, legs};
 use super::sky::Sky;
 use super::slices::Slice;
-use super::stream::{brought, seeping_into};
+use super::stream::{HELD_DAYS, brought, seeping_into};
 use super::water::{Stretch, Told, Water};
 
 /// Hours of a day (standard).
@@ -36,8 +39,9 @@ pub(super) struct Seen {
 pub(super) struct Met {
     /// By reach.
     told: Vec<Told>,
-    /// Streams, by reach and place in it, whose series ended, or that are not known.
-    held: Vec<(usize, usize)>,
+    /// Streams, by reach and place in it, whose series ended, with the day of the reading that is held.
+    held: BTreeMap<(usize, usize), NaiveDate>,
+    /// Those that are not known.
     unknown: Vec<(usize, usize)>,
     /// Streams and seepage without oxygen.
     no_oxygen: bool,
@@ -51,7 +55,7 @@ pub(super) struct Run<'a> {
     midnight: DateTime<FixedOffset>,
     sky: Sky,
     repeated: bool,
-    pub(super) by_hour: bool,
+    pub(super) by: By,
     pub(super) pressure_atm: f64,
     legs: Vec<Leg>,
     looks: bool,
@@ -76,19 +80,29 @@ impl<'a> Run<'a> {
         let surface = river.surface.as_ref()?;
         let (sky, repeated) = Sky::over(surface, &conditions.weather, midnight, DAY_H + way_h)?;
         let hourly_weather = matches!(surface, Surface::File(_)) && conditions.weather.is_hourly();
+        let by = match (hourly_weather, flows.len()) {
+            (true, _) => By::Hours,
+            (false, 0 | 1) => By::Day,
+            (false, _) => By::Blocks,
+        };
         Some(Self {
             river,
             conditions,
             midnight,
             sky,
             repeated,
-            by_hour: flows.len() > 1 || hourly_weather,
+            by,
             // the river runs about as high as the bed of the pool (choice)
             pressure_atm: site.surface_pressure_atm(site.pool.bed_m),
             legs: legs(river, looks),
             looks: looks > 0,
             stride: 1.0,
         })
+    }
+
+    /// Whether each hour goes down by itself.
+    pub(super) fn by_hour(&self) -> bool {
+        self.by != By::Day
     }
 
     pub(super) fn river(&self) -> &'a River {
@@ -177,14 +191,14 @@ impl<'a> Run<'a> {
         let Some(stream) = reach.inflows.get(place.1) else { return water };
         let Some(at) = self.time(clock_h) else { return water };
         let record = self.conditions.streams.get(&stream.name);
-        let Some(brought) = brought(stream, record, at, self.by_hour) else {
+        let Some(brought) = brought(stream, record, at, self.by_hour()) else {
             if !met.unknown.contains(&place) {
                 met.unknown.push(place);
             }
             return water;
         };
-        if brought.held && !met.held.contains(&place) {
-            met.held.push(place);
+        if let Some(day) = brought.held {
+            met.held.entry(place).and_modify(|first| *first = day.min(*first)).or_insert(day);
         }
         met.no_oxygen |= brought.water.oxygen_mg_l.is_none();
         water.with(brought.water)
@@ -204,6 +218,14 @@ impl<'a> Run<'a> {
     /// What is to be told of the way.
     pub(super) fn flags(&self, met: &Met) -> Vec<Problem> {
         let mut out = Vec::new();
+        if self.by == By::Blocks {
+            out.push(Problem::flag(
+                "no-daily-cycle",
+                "the air is not known by the hour: greatest, least and change within the day come from the blocks alone, \
+                 without the day's cycle of the air",
+                "give weather by the hour, with which they lie farther apart",
+            ));
+        }
         if self.repeated {
             out.push(Problem::flag(
                 "weather-repeated",
@@ -249,18 +271,27 @@ impl<'a> Run<'a> {
         }
         let name = |place: &(usize, usize)| {
             let stream = self.river.reaches.get(place.0).and_then(|r| r.inflows.get(place.1));
-            stream.map_or_else(String::new, |s| s.name.clone())
+            stream.map_or_else(String::new, |s| format!("{} `{}`", s.what(), s.name))
         };
-        for place in &met.held {
+        for (place, day) in &met.held {
             let words = format!(
-                "the series of `{}` ends before this water passes: its last reading is held",
-                name(place)
+                "the readings of the {} end before this water passes: what was read on {} is held",
+                name(place),
+                day.format("%Y-%m-%d")
             );
-            out.push(Problem::flag("stream-held", words, "add newer readings, or figures for the stream"));
+            out.push(Problem::flag(
+                "stream-held",
+                words,
+                "add newer readings, or its figures in the site file",
+            ));
         }
         for place in &met.unknown {
-            let words = format!("nothing tells what `{}` brings that day: it is left out", name(place));
-            out.push(Problem::flag("stream-unknown", words, "add readings, or figures for the stream"));
+            let words = format!(
+                "nothing tells what the {} brings, neither figures nor a reading of the {HELD_DAYS} days before: it is \
+                 left out",
+                name(place)
+            );
+            out.push(Problem::flag("stream-unknown", words, "add readings, or its figures in the site file"));
         }
         if met.no_oxygen {
             out.push(Problem::flag(

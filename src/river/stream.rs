@@ -2,7 +2,7 @@
 //!
 //! Methods: `docs/methods.md`, section 6.
 
-use chrono::{DateTime, Datelike, FixedOffset, TimeDelta};
+use chrono::{DateTime, Datelike, FixedOffset, NaiveDate, TimeDelta};
 
 use crate::series::{Record, Series};
 use crate::site::{Inflow, Reach, Yearly};
@@ -13,25 +13,30 @@ use super::water::{Seeping, Water};
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub(super) struct Brought {
     pub(super) water: Water,
-    /// Its series ended before, and its last reading holds on.
-    pub(super) held: bool,
+    /// Its series ended before, and what was read on this day holds on.
+    pub(super) held: Option<NaiveDate>,
 }
 
-/// The water of a stream: by its series where that tells the moment, else by its figures, else by the last reading
-/// before. `None` where flow or temperature are not known at all.
+/// Days for which the last reading of a stream is held where it has no figures (choice: what is read today serves the
+/// ten days that are looked ahead, and the way down after them).
+pub(super) const HELD_DAYS: i64 = 14;
+
+/// The water of a stream: by its series where that tells the moment, else by its figures, else by a last reading that
+/// is not older than [`HELD_DAYS`]. `None` where flow or temperature are not known at all.
 pub(super) fn brought(
     stream: &Inflow,
     record: Option<&Record>,
     at: DateTime<FixedOffset>,
     by_hour: bool,
 ) -> Option<Brought> {
-    let mut held = false;
+    let mut held: Option<NaiveDate> = None;
     let mut figure = |series: Option<&Series>, given: Option<&Yearly>| {
         let told = series.and_then(|s| told(s, at, by_hour)).or(given.map(|g| g.in_month(at.month())));
         told.or_else(|| {
-            let last = series.and_then(|s| last(s, at));
-            held |= last.is_some();
-            last
+            let (time, value) = series.and_then(|s| last(s, at))?;
+            let day = time.with_timezone(at.offset()).date_naive();
+            held = Some(held.map_or(day, |first| first.min(day)));
+            Some(value)
         })
     };
     let flow_m3s = figure(record.map(|r| &r.flow_m3s), stream.flow_m3s.as_ref())?.max(0.0);
@@ -67,7 +72,9 @@ fn told(series: &Series, at: DateTime<FixedOffset>, by_hour: bool) -> Option<f64
     Some(day.iter().map(|r| r.1).sum::<f64>() / day.len() as f64)
 }
 
-fn last(series: &Series, at: DateTime<FixedOffset>) -> Option<f64> {
+/// The last reading before a moment, if it is not too old.
+fn last(series: &Series, at: DateTime<FixedOffset>) -> Option<(DateTime<FixedOffset>, f64)> {
     let readings = series.readings();
-    readings.partition_point(|r| r.0 <= at).checked_sub(1).and_then(|i| readings.get(i)).map(|r| r.1)
+    let last = readings.partition_point(|r| r.0 <= at).checked_sub(1).and_then(|i| readings.get(i)).copied();
+    last.filter(|(time, _)| at - *time <= TimeDelta::days(HELD_DAYS))
 }

@@ -155,6 +155,13 @@ impl Reach {
     }
 }
 
+impl Inflow {
+    /// What it is called in a sentence.
+    pub fn what(&self) -> &'static str {
+        if self.release { "second release" } else { "side stream" }
+    }
+}
+
 impl Point {
     /// Stage of a flow by its rating, m; `None` without a rating and outside its rows.
     pub fn stage_m(&self, flow_m3s: f64) -> Option<f64> {
@@ -169,15 +176,5 @@ impl River {
     /// Where the last reach ends, m from the dam.
     pub fn length_m(&self) -> f64 {
         self.reaches.last().map_or(0.0, Reach::to_m)
-    }
-
-    /// Index of a point by name.
-    pub fn point(&self, name: &str) -> Option<usize> {
-        self.points.iter().position(|p| p.name == name)
-    }
-
-    /// All streams that join, from the dam down.
-    pub fn inflows(&self) -> impl Iterator<Item = &Inflow> {
-        self.reaches.iter().flat_map(|r| &r.inflows)
     }
 }

@@ -2,6 +2,7 @@
 //!
 //! Methods: `docs/methods.md`, section 6.
 
+pub mod believed;
 mod budget;
 pub mod humidity;
 mod reading;
@@ -10,7 +11,9 @@ mod wind;
 
 use std::collections::BTreeMap;
 
-use chrono::{DateTime, FixedOffset, NaiveDate, Timelike};
+use chrono::{DateTime, FixedOffset, NaiveDate, TimeDelta, Timelike};
+
+use crate::series::LONGEST_GAP_H;
 
 pub use budget::{
     Budget, REFLECTED, budget, equilibrium_c, exchange_w_m2_c, vapour_slope_mmhg_c, wind_function,
@@ -49,6 +52,18 @@ impl Air {
             solar_w_m2: mean(&|air| air.solar_w_m2),
         })
     }
+
+    /// The air on the straight way from this one to another, at a share of it, 0 to 1: vapour pressure, not dew point.
+    fn towards(&self, other: &Self, share: f64) -> Self {
+        let between = |of: &dyn Fn(&Self) -> f64| (1.0 - share) * of(self) + share * of(other);
+        Self {
+            temperature_c: between(&|air| air.temperature_c),
+            dew_point_c: humidity::dew_point_c(between(&|air| humidity::saturation_kpa(air.dew_point_c))),
+            wind_m_s: between(&|air| air.wind_m_s),
+            cloud: between(&|air| air.cloud),
+            solar_w_m2: between(&|air| air.solar_w_m2),
+        }
+    }
 }
 
 /// Weather as a series: by the hour or by the day. What is missing is absent.
@@ -66,8 +81,12 @@ pub struct Weather {
 const HOURS: usize = 24;
 
 impl Weather {
-    /// Weather by the hour, with the means of its whole days. The hours are those of the site's offset.
-    pub fn of_hours(hours: BTreeMap<DateTime<FixedOffset>, Air>) -> Self {
+    /// Weather by the hour, with the means of its whole days. The hours are those of the site's offset. Between two no
+    /// more than [`LONGEST_GAP_H`] apart those that are missing are put in, so that a forecast that goes by three hours
+    /// goes by the hour; longer gaps stay.
+    pub fn of_hours(mut hours: BTreeMap<DateTime<FixedOffset>, Air>) -> Self {
+        let between = between(&hours);
+        hours.extend(between);
         let mut by_day: BTreeMap<NaiveDate, Vec<Air>> = BTreeMap::new();
         for (time, air) in &hours {
             by_day.entry(time.date_naive()).or_default().push(*air);
@@ -98,4 +117,17 @@ impl Weather {
     pub fn day(&self, date: NaiveDate) -> Option<Air> {
         self.days.get(&date).copied()
     }
+}
+
+/// The hours that are missing in short gaps.
+fn between(hours: &BTreeMap<DateTime<FixedOffset>, Air>) -> Vec<(DateTime<FixedOffset>, Air)> {
+    let mut out = Vec::new();
+    for ((from, before), (to, after)) in hours.iter().zip(hours.iter().skip(1)) {
+        let gap_h = (*to - *from).num_hours();
+        if gap_h <= LONGEST_GAP_H {
+            let put = |h: i64| (*from + TimeDelta::hours(h), before.towards(after, h as f64 / gap_h as f64));
+            out.extend((1..gap_h).map(put));
+        }
+    }
+    out
 }

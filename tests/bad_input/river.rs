@@ -109,7 +109,7 @@ pub(super) const REFUSED: &[Case] = &[
     ("  name: Quillon\n", "  nmae: Quillon\n", "unknown-key", "river.nmae", "unknown key"),
 ];
 
-const REFUSED_MONTHLY: &[Case] = &[
+pub(super) const REFUSED_MONTHLY: &[Case] = &[
     ("humidity: 70", "humidity: 70, dew_point: 6", "damp", "river.monthly", "both humidity and dew_point"),
     ("humidity: 70, ", "", "damp", "river.monthly", "neither humidity nor dew_point"),
     ("humidity: 70", "humidity: 170", "share", "river.monthly.humidity", "outside 0 to 100 %"),
@@ -117,6 +117,11 @@ const REFUSED_MONTHLY: &[Case] = &[
     ("wind: 2.5", "wind: -2.5", "negative", "river.monthly.wind", "cannot be negative"),
     ("wind_height: 9", "wind_height: 0", "not-positive", "river.monthly.wind_height", "above zero"),
     (", cloud: 50", "", "no-sky", "river.monthly", "neither cloud nor sunshine nor radiation"),
+    ("air: 12", "air: 80", "weather-range", "river.monthly.air", "outside -60"),
+    ("wind: 2.5", "wind: 250", "weather-range", "river.monthly.wind", "above 75"),
+    ("cloud: 50", "sunshine_h: 25", "weather-range", "river.monthly.sunshine_h", "above 24 h"),
+    ("cloud: 50", "radiation_w_m2: 2000", "weather-range", "river.monthly.radiation_w_m2", "above 1500 W/m2"),
+    ("humidity: 70", "dew_point: -300", "weather-range", "river.monthly.dew_point", "outside -60"),
     (", latitude: 44.1", "", "no-latitude", "river.monthly", "latitude is needed"),
     ("air: 12, ", "", "missing-key", "river.monthly.air", "air is missing"),
 ];
@@ -126,6 +131,12 @@ pub(super) const FLAGGED: &[Case] = &[
     ("[[20, 4], [60, 2.5]]", "[[20, 1], [60, 0.9]]", "rise-early", "river.reaches[0].rise_hours", "sooner"),
     ("  equilibrium: 22\n  exchange_w_m2_c: 30\n", "", "no-weather", "river", "trades with the air"),
     ("equilibrium: 22", "equilibrium: 22\n  weather: weather.csv", "weather-twice", "river", "weather file"),
+];
+
+/// Of a river under the weather of the months, with radiation, without cloud.
+pub(super) const FLAGGED_MONTHLY: &[Case] = &[
+    (", latitude: 44.1", "", "cloud-assumed", "river.monthly", "0.5 is assumed"),
+    ("humidity: 70", "dew_point: 13.1", "dew-above-air", "river.monthly.dew_point", "over 1 C above its air"),
 ];
 
 fn changed(sound: &str, from: &str, to: &str) -> String {
@@ -160,8 +171,13 @@ fn scenario_each_error_of_a_river_is_told_at_its_place_and_alone() {
 
 #[test]
 fn scenario_what_is_odd_about_a_river_is_flagged_or_noted() {
-    for (from, to, kind, path, words) in FLAGGED {
-        let read = site(&changed(DAM, from, to), "site.yaml");
+    let months = changed(&monthly(), "cloud: 50", "radiation_w_m2: 180");
+    assert_eq!(said(&site(&months, "site.yaml").problems), Vec::<String>::new());
+    let given = FLAGGED.iter().map(|case| (DAM, case));
+    for (sound, (from, to, kind, path, words)) in
+        given.chain(FLAGGED_MONTHLY.iter().map(|case| (months.as_str(), case)))
+    {
+        let read = site(&changed(sound, from, to), "site.yaml");
         let told = |p: &gatemix::problem::Problem| {
             p.kind == *kind && p.place.path.as_deref() == Some(*path) && p.to_string().contains(words)
         };
@@ -194,9 +210,10 @@ fn scenario_a_sound_river_reaches_the_site() {
     assert_eq!(river.reaches.iter().map(|r| r.from_m).collect::<Vec<_>>(), [0.0, 20_000.0]);
     assert_abs_diff_eq!(river.length_m(), 34_000.0);
     // streams and points stand in the order of the water
-    assert_eq!(river.inflows().map(|w| w.name.as_str()).collect::<Vec<_>>(), ["Clover Creek", "Tansy Creek"]);
+    let inflows = river.reaches.iter().flat_map(|r| &r.inflows);
+    assert_eq!(inflows.map(|w| w.name.as_str()).collect::<Vec<_>>(), ["Clover Creek", "Tansy Creek"]);
     assert_eq!(river.points.iter().map(|p| p.name.as_str()).collect::<Vec<_>>(), ["Weir", "Mill Bridge"]);
-    let bridge = &river.points[river.point("Mill Bridge").unwrap()];
+    let bridge = river.points.iter().find(|p| p.name == "Mill Bridge").unwrap();
     assert_eq!((bridge.observed.as_deref(), bridge.warning_h), (Some("mill.csv"), Some(1.5)));
     assert_abs_diff_eq!(bridge.stage_m(12.5).unwrap(), 0.65, epsilon = 1e-12);
     assert_eq!((bridge.stage_m(4.9), bridge.stage_m(20.1)), (None, None));

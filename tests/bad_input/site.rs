@@ -275,8 +275,9 @@ fn law_every_kind_of_problem_a_site_can_have_has_a_case() {
     for folder in ["src/site", "src/files/site"] {
         gather(&Path::new(env!("CARGO_MANIFEST_DIR")).join(folder), &mut kinds);
     }
-    let flagged = FLAGGED.iter().chain(aeration::FLAGGED).chain(river::FLAGGED);
-    let cases: BTreeSet<&str> = all().chain(river::REFUSED).chain(flagged).map(|c| c.2).collect();
+    let flagged = FLAGGED.iter().chain(aeration::FLAGGED).chain(river::FLAGGED).chain(river::FLAGGED_MONTHLY);
+    let cases: BTreeSet<&str> =
+        all().chain(river::REFUSED).chain(river::REFUSED_MONTHLY).chain(flagged).map(|c| c.2).collect();
     // shown by the two tests above
     let elsewhere = [
         "damp",

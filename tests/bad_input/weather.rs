@@ -79,6 +79,27 @@ fn scenario_weather_by_the_hour_in_customary_units() {
 }
 
 #[test]
+fn scenario_weather_by_three_hours_is_weather_by_the_hour_and_noted() {
+    let row = |h: u32| format!("2026-07-{:02}T{:02}:00,{h},-5,3,20\n", 1 + h / 24, h % 24);
+    let file = |hours: &[u32]| {
+        let rows: String = hours.iter().map(|h| row(*h)).collect();
+        read(&format!("# wind height: 10 m\ntime,air_C,dew_point_C,wind_m_s,cloud_percent\n{rows}"))
+    };
+    let (weather, problems) = file(&[0, 3, 6, 9, 12, 15, 18, 21, 24, 27]);
+    let noted = "weather.csv: note: 18 hour(s) are put in, straight between rows no more than 3 h apart";
+    assert_eq!(said(&problems), [noted]);
+    let weather = weather.unwrap();
+    assert_eq!((weather.hours.len(), weather.days.len()), (28, 1));
+    let at = weather.at(DateTime::parse_from_rfc3339("2026-07-01T04:00:00-07:00").unwrap()).unwrap();
+    assert_abs_diff_eq!(at.temperature_c, 4.0, epsilon = 1e-12);
+    // a longer gap stays
+    let (weather, problems) = file(&[0, 1, 5, 6]);
+    assert_eq!(weather.unwrap().hours.len(), 4);
+    let gap = problems.iter().find(|p| p.kind == "weather-gap").unwrap().to_string();
+    assert!(gap.contains("3 hour(s) between the first and the last") && gap.contains("the day before again"));
+}
+
+#[test]
 fn scenario_the_radiation_of_a_day_tells_the_cloud_of_its_hours() {
     let file = |share: f64| {
         let stand = |hour: u32| gatemix::weather::Stand {

@@ -1,7 +1,8 @@
 //! The heat through a water surface, and the oxygen of a river and below an outlet.
 
+use chrono::{DateTime, FixedOffset, TimeDelta};
 use gatemix::water::{self, Aeration, Sag};
-use gatemix::weather::{Air, budget, equilibrium_c, exchange_w_m2_c};
+use gatemix::weather::{Air, Weather, budget, equilibrium_c, exchange_w_m2_c, humidity};
 use proptest::prelude::*;
 
 use crate::columns::config;
@@ -113,4 +114,46 @@ proptest! {
             prop_assert!((equal.0 - near.0).abs() < 1e-6 * (1.0 + equal.0));
         }
     }
+}
+
+/// Weather of every third hour is weather by the hour: near what was thinned, with days, and longer gaps stay.
+#[test]
+fn law_weather_by_three_hours_goes_by_the_hour() {
+    let midnight: DateTime<FixedOffset> = "2026-07-15T00:00:00+00:00".parse().unwrap();
+    let air = |h: i64| {
+        let wave = ((h - 9) as f64 / 24.0 * std::f64::consts::TAU).sin();
+        Air {
+            temperature_c: 20.0 + 8.0 * wave,
+            dew_point_c: 11.0 + 2.0 * wave,
+            wind_m_s: 2.0 + wave,
+            cloud: 0.3,
+            solar_w_m2: (800.0 * wave).max(0.0),
+        }
+    };
+    let every = |step: usize| {
+        let hours = (0..=72).step_by(step).map(|h| (midnight + TimeDelta::hours(h), air(h)));
+        Weather::of_hours(hours.collect())
+    };
+    let (whole, thin, gaps) = (every(1), every(3), every(4));
+    assert_eq!((whole.hours.len(), thin.hours.len(), gaps.hours.len()), (73, 73, 19));
+    assert_eq!((whole.days.len(), thin.days.len(), gaps.days.len()), (3, 3, 0));
+    for h in 0..=72 {
+        let at = |w: &Weather| w.at(midnight + TimeDelta::hours(h)).unwrap();
+        let (whole, thin) = (at(&whole), at(&thin));
+        if h % 3 == 0 {
+            assert_eq!(whole, thin);
+        }
+        // a sine over three of its 24 hours leaves its chord by no more than 1 - cos(22.5 degrees)
+        assert!((whole.temperature_c - thin.temperature_c).abs() <= 8.0 * 0.0762, "{h}");
+        assert!((whole.dew_point_c - thin.dew_point_c).abs() < 0.25, "{h}");
+        assert!((whole.cloud - thin.cloud).abs() < 1e-12 && thin.solar_w_m2 >= 0.0, "{h}");
+    }
+    // vapour pressure goes straight, so the dew point bows upward
+    let two = [(0, 0.0), (2, 20.0)]
+        .map(|(h, dew_point_c)| (midnight + TimeDelta::hours(h), Air { dew_point_c, ..air(0) }));
+    let middle = Weather::of_hours(two.into_iter().collect()).at(midnight + TimeDelta::hours(1)).unwrap();
+    let vapour = 0.5 * (humidity::saturation_kpa(0.0) + humidity::saturation_kpa(20.0));
+    assert!(
+        (humidity::saturation_kpa(middle.dew_point_c) - vapour).abs() < 1e-9 && middle.dew_point_c > 11.0
+    );
 }

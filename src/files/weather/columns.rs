@@ -1,6 +1,9 @@
 //! The columns of a weather file, with their units and what can be believed in each.
 
+use std::ops::RangeInclusive;
+
 use crate::units::Unit;
+use crate::weather::believed::{AIR_C, SOLAR_W_M2, SUNSHINE_H, WIND_M_S};
 use crate::weather::{Damp, Reading, Sky};
 
 /// Mile an hour, m/s (standard; exact by the international mile, from memory).
@@ -158,14 +161,15 @@ impl Told {
     /// What is believed, in SI, as it stands in the sentence of a refusal (choice: records of the Earth and a little
     /// beyond). A humidity of up to 105 % and radiation of -20 W/m2 are the slips of sound sensors.
     pub(super) fn range(self) -> (f64, f64, &'static str) {
+        let of = |range: &RangeInclusive<f64>, words| (*range.start(), *range.end(), words);
         match self {
             Self::When => (f64::NEG_INFINITY, f64::INFINITY, ""),
-            Self::Air | Self::DewPoint | Self::WetBulb => (-60.0, 60.0, "-60 to 60 C"),
+            Self::Air | Self::DewPoint | Self::WetBulb => of(&AIR_C, "-60 to 60 C"),
             Self::Humidity => (0.0, 1.05, "0 to 105 %"),
-            Self::Wind => (0.0, 75.0, "0 to 75 m/s"),
+            Self::Wind => of(&WIND_M_S, "0 to 75 m/s"),
             Self::Cloud => (0.0, 1.0, "0 to 100 %, or 10 tenths"),
-            Self::Sunshine => (0.0, 24.0, "0 to 24 h"),
-            Self::Radiation => (-20.0, 1500.0, "-20 to 1500 W/m2"),
+            Self::Sunshine => of(&SUNSHINE_H, "0 to 24 h"),
+            Self::Radiation => of(&SOLAR_W_M2, "-20 to 1500 W/m2"),
         }
     }
 }

@@ -5,16 +5,15 @@ use std::collections::{BTreeMap, BTreeSet};
 use chrono::{DateTime, Datelike, FixedOffset, NaiveDate, TimeDelta, Timelike};
 
 use crate::problem::Problem;
+use crate::series::LONGEST_GAP_H;
 use crate::site::Site;
 use crate::units::say;
+use crate::weather::believed::DEW_ABOVE_C;
 use crate::weather::{Air, Stand, Weather, sun};
 
 use super::super::cast::{SENTINELS, TIME_CURE, parse_time};
 use super::super::table::{MOST_PROBLEMS, Table};
 use super::columns::{Column, Row};
-
-/// A dew point this far above the air is told, C (choice: two good sensors differ by less).
-const DEW_ABOVE_C: f64 = 1.0;
 
 /// A row with its moment.
 struct Dated {
@@ -112,7 +111,7 @@ pub(super) fn weather(
     );
     let words = format!("have a dew point over {} above the air", say::dc(DEW_ABOVE_C, 0));
     flag(&damp, "dew-above-air", &words, "check both columns");
-    let weather = if hourly { by_hour(airs) } else { by_day(airs) };
+    let weather = if hourly { by_hour(airs, problems) } else { by_day(airs) };
     gaps(&weather, problems);
     if weather.days.is_empty() && weather.hours.is_empty() && !crate::problem::any_refused(problems) {
         let words = "no row tells the air, its water, the wind and the sky";
@@ -208,16 +207,24 @@ fn cloud_of_days(site: &Site, dated: &mut [Dated]) {
     }
 }
 
-/// Several rows within an hour are one hour, their mean.
-fn by_hour(airs: BTreeMap<DateTime<FixedOffset>, Air>) -> Weather {
+/// Several rows within an hour are one hour, their mean; hours missing in short gaps are put in and noted.
+fn by_hour(airs: BTreeMap<DateTime<FixedOffset>, Air>, problems: &mut Vec<Problem>) -> Weather {
     let mut hours: BTreeMap<DateTime<FixedOffset>, Vec<Air>> = BTreeMap::new();
     for (time, air) in airs {
         let begin = TimeDelta::seconds(i64::from(time.minute() * 60 + time.second()))
             + TimeDelta::nanoseconds(i64::from(time.nanosecond()));
         hours.entry(time - begin).or_default().push(air);
     }
+    let told = hours.len();
     let means = hours.into_iter().filter_map(|(hour, airs)| Some((hour, Air::mean(&airs)?)));
-    Weather::of_hours(means.collect())
+    let weather = Weather::of_hours(means.collect());
+    let put = weather.hours.len().saturating_sub(told);
+    if put > 0 {
+        let words =
+            format!("{put} hour(s) are put in, straight between rows no more than {LONGEST_GAP_H} h apart");
+        problems.push(Problem::note("weather-between", words));
+    }
+    weather
 }
 
 fn by_day(airs: BTreeMap<DateTime<FixedOffset>, Air>) -> Weather {
@@ -244,6 +251,7 @@ fn gaps(weather: &Weather, problems: &mut Vec<Problem>) {
     };
     if missing > 0 {
         let words = format!("{missing} {what} between the first and the last are missing");
-        problems.push(Problem::flag("weather-gap", words, "nothing is put in their place"));
+        let cure = "add them; until then the river takes the day before again, and says so";
+        problems.push(Problem::flag("weather-gap", words, cure));
     }
 }

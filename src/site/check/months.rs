@@ -4,7 +4,9 @@ use chrono::{Datelike, NaiveDate};
 
 use crate::problem::Problem;
 use crate::site::{Raw, RawMonthly, Yearly};
-use crate::weather::{Air, Damp, Reading, STATION_HEIGHT_M, Sky, Stand};
+use crate::units::say;
+use crate::weather::believed::{AIR_C, DEW_ABOVE_C, SOLAR_W_M2, SUNSHINE_H, WIND_M_S};
+use crate::weather::{Air, CLOUD_UNKNOWN, Damp, Reading, STATION_HEIGHT_M, Sky, Stand};
 
 use super::outlets::{not_negative, positive};
 
@@ -31,16 +33,31 @@ pub(super) fn air(m: &RawMonthly, raw: &Raw, problems: &mut Vec<Problem>) -> Opt
             problems.push(Problem::refused("share", words, "correct the figure").at(at(key)));
         }
     }
-    let amounts =
-        [(&m.wind_m_s, "wind"), (&m.radiation_w_m2, "radiation_w_m2"), (&m.sunshine_h, "sunshine_h")];
-    for (yearly, key) in amounts {
+    for (yearly, key) in [(&m.air_c, "air"), (&m.dew_point_c, "dew_point")] {
+        if figures(yearly.as_ref()).any(|c| !AIR_C.contains(&c)) {
+            let (least, most) = (say::c(*AIR_C.start(), 0), say::c(*AIR_C.end(), 0));
+            let words = format!("{key} lies outside {least} to {most}");
+            problems.push(Problem::refused("weather-range", words, "check its unit").at(at(key)));
+        }
+    }
+    let amounts = [
+        (&m.wind_m_s, "wind", WIND_M_S, say::m_s(*WIND_M_S.end(), 0).to_string()),
+        (&m.radiation_w_m2, "radiation_w_m2", SOLAR_W_M2, format!("{:.0} W/m2", SOLAR_W_M2.end())),
+        (&m.sunshine_h, "sunshine_h", SUNSHINE_H, format!("{:.0} h", SUNSHINE_H.end())),
+    ];
+    for (yearly, key, range, most) in amounts {
         let least = figures(yearly.as_ref()).reduce(f64::min);
         not_negative(least, at(key), key, problems);
+        if figures(yearly.as_ref()).any(|v| v > *range.end()) {
+            let words = format!("{key} lies above {most}");
+            problems.push(Problem::refused("weather-range", words, "check its unit").at(at(key)));
+        }
     }
     positive(m.wind_height_m, at("wind_height"), "wind_height", problems);
     if !damp || problems.len() > before {
         return None;
     }
+    let (mut assumed, mut above) = (false, false);
     let mut out = Vec::with_capacity(12);
     for month in 1..=12 {
         let of = |yearly: &Option<Yearly>| yearly.as_ref().map(|y| y.in_month(month));
@@ -63,12 +80,25 @@ pub(super) fn air(m: &RawMonthly, raw: &Raw, problems: &mut Vec<Problem>) -> Opt
             hours: None,
         };
         match reading.air(&stand) {
-            Ok((air, _)) => out.push(air),
+            Ok((air, guessed)) => {
+                assumed |= guessed;
+                above |= air.dew_point_c > air.temperature_c + DEW_ABOVE_C;
+                out.push(air);
+            }
             Err(problem) => {
                 problems.push(problem.at("river.monthly"));
                 return None;
             }
         }
+    }
+    if assumed {
+        let words = format!("no cloud is given, nor what tells it: {CLOUD_UNKNOWN} is assumed");
+        let cure = "give cloud, or `place: { latitude: 44.1 }`";
+        problems.push(Problem::flag("cloud-assumed", words, cure).at("river.monthly"));
+    }
+    if above {
+        let words = format!("a dew point lies over {} above its air", say::dc(DEW_ABOVE_C, 0));
+        problems.push(Problem::flag("dew-above-air", words, "check both").at(at("dew_point")));
     }
     out.try_into().ok()
 }

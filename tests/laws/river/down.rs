@@ -1,7 +1,7 @@
 //! Down the river: what is conserved, what is unchanged, where it tends to.
 
 use approx::assert_abs_diff_eq;
-use gatemix::river::{Conditions, Course, course};
+use gatemix::river::{By, Conditions, Course, course};
 use gatemix::site::Site;
 use gatemix::water::saturation_mg_l;
 use proptest::prelude::*;
@@ -179,6 +179,31 @@ fn law_hours_tend_to_the_day_as_it_flattens() {
         assert_abs_diff_eq!(one.figures.mean_c, two.figures.mean_c, epsilon = 1e-9);
         assert_abs_diff_eq!(two.figures.hourly_change_c.unwrap(), 0.0, epsilon = 1e-9);
     }
+}
+
+/// Blocks under air that is not known by the hour lack the day's cycle, and that is told.
+#[test]
+fn scenario_blocks_without_hours_of_the_air_are_told_apart() {
+    let (flat, blocks) =
+        ([part(24.0, 20.0, 9.0, 8.0)], [part(12.0, 20.0, 9.0, 8.0), part(12.0, 22.0, 9.0, 8.0)]);
+    let (given, file) = (long(GIVEN), long(WEATHER));
+    let (none, by_day, by_hour) = (Conditions::default(), daily(0.8), hourly(0.8));
+    let swing = |c: &Course| c.points[1].figures.range_c.map(|(greatest, least)| greatest - least);
+    for (site, conditions, parts, by) in [
+        (&given, &none, &flat[..], By::Day),
+        (&given, &none, &blocks[..], By::Blocks),
+        (&file, &by_day, &flat[..], By::Day),
+        (&file, &by_day, &blocks[..], By::Blocks),
+        (&file, &by_hour, &flat[..], By::Hours),
+        (&file, &by_hour, &blocks[..], By::Hours),
+    ] {
+        let course = course(site, conditions, day(), parts).unwrap();
+        assert_eq!(course.by, by);
+        assert_eq!(course.flags.iter().any(|f| f.kind == "no-daily-cycle"), by == By::Blocks);
+        assert_eq!(swing(&course).is_none(), by == By::Day);
+    }
+    let of = |conditions: &Conditions| swing(&course(&file, conditions, day(), &blocks).unwrap()).unwrap();
+    assert!(of(&by_hour) > of(&by_day) + 1.0, "{} {}", of(&by_hour), of(&by_day));
 }
 
 /// What is not known is told: weather that ends, streams whose oxygen nobody gave.

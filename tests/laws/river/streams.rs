@@ -19,9 +19,14 @@ fn site(figures: &str) -> Site {
 
 /// A record of the first so many hours of the day, each hour as warm as its number, 20 m3/s.
 fn record(hours: i64) -> Conditions {
+    record_before(0, hours)
+}
+
+/// The same of a day so many days before.
+fn record_before(days: i64, hours: i64) -> Conditions {
     let midnight: DateTime<FixedOffset> = format!("{DAY}T00:00:00+00:00").parse().unwrap();
     let series = |of: &dyn Fn(f64) -> f64| {
-        Series::new((0..hours).map(|h| (midnight + TimeDelta::hours(h), of(h as f64))).collect())
+        Series::new((0..hours).map(|h| (midnight + TimeDelta::hours(h - 24 * days), of(h as f64))).collect())
     };
     let record = Record { temperature_c: series(&|h| h), flow_m3s: series(&|_| 20.0), ..Record::default() };
     let mut conditions = Conditions::default();
@@ -48,6 +53,33 @@ fn scenario_a_stream_brings_what_its_record_tells_of_the_hour() {
     assert_abs_diff_eq!(hourly[23], 0.5 * (10.0 + 23.0), epsilon = 1e-9);
     assert!(kinds(&course).contains(&"stream-held"));
     assert_abs_diff_eq!(course.points[0].figures.flow_m3s, 40.0, epsilon = 1e-12);
+}
+
+/// A last reading serves for two weeks and no longer, and its day is named.
+#[test]
+fn scenario_an_old_reading_of_a_stream_is_not_held() {
+    for (days, kind, words) in [
+        (
+            3,
+            "stream-held",
+            "side stream `Creek` end before this water passes: what was read on 2026-07-12 is held",
+        ),
+        (13, "stream-held", "what was read on 2026-07-02 is held"),
+        (15, "stream-unknown", "neither figures nor a reading of the 14 days before"),
+        (2700, "stream-unknown", "it is left out"),
+    ] {
+        let course = blocks(&site(""), &record_before(days, 24));
+        let told =
+            course.flags.iter().find(|f| f.kind == kind).unwrap_or_else(|| panic!("{:?}", course.flags));
+        assert!(told.to_string().contains(words), "{days}: {told}");
+        let flow = if kind == "stream-held" { 40.0 } else { 20.0 };
+        assert_abs_diff_eq!(course.points[0].figures.flow_m3s, flow, epsilon = 1e-12);
+        // its figures, where it has them, serve instead
+        let course = blocks(&site("flow: 20, temperature: 4,"), &record_before(days, 24));
+        assert_abs_diff_eq!(course.points[0].hourly_c[23], 0.5 * (10.0 + 4.0), epsilon = 1e-9);
+    }
+    let release = blocks(&site("release: true,"), &Conditions::default());
+    assert!(release.flags.iter().any(|f| f.to_string().contains("what the second release `Creek` brings")));
 }
 
 #[test]
