@@ -105,7 +105,7 @@ impl Column {
     }
 }
 
-/// Values that loggers write for "no reading".
+/// Values that loggers write for "no reading" (common practice, no source).
 pub(super) const SENTINELS: [f64; 9] =
     [-99.0, -99.9, -99.99, -999.0, -999.9, -999.99, -9999.0, -9999.9, -99999.0];
 

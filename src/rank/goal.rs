@@ -316,7 +316,7 @@ fn up_to(steps: f64, last: f64) -> f64 {
     if steps < last { steps } else { last }
 }
 
-/// A float this large has no room for parts of one.
+/// A float this large has no room for parts of one (exact: 2^52).
 const WHOLE: f64 = 4_503_599_627_370_496.0;
 
 /// The whole part of a number from 0 up, 0 below: to the nearest whole number of half a step less. Several lanes at

@@ -21,7 +21,7 @@ use super::sums::{Sums, put};
 use super::tail::{Block, Head, ROWS, Tail, fill, greatest, least, waters};
 use super::whole::WholeRule;
 
-/// A rule is kept when it is missed by less than this share of its bound: round-off.
+/// A rule is kept when it is missed by less than this share of its bound (choice: round-off).
 const ROUND_OFF: f64 = 1e-9;
 /// What spans are eased by, C, mg/L and shares (choice: far above round-off, far below any bin).
 const SAFE: f64 = 1e-9;

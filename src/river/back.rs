@@ -2,13 +2,15 @@
 //!
 //! Methods: `docs/methods.md`, section 6.
 
-use chrono::NaiveDate;
+use chrono::{DateTime, FixedOffset, NaiveDate, TimeDelta};
 
 use crate::site::Site;
 use crate::water::saturation_mg_l;
 
 use super::Conditions;
 use super::figures::Figures;
+use super::hours::hours;
+use super::legs::legs;
 use super::link::figures;
 use super::run::Run;
 
@@ -151,6 +153,20 @@ pub fn least_oxygen(
         End::Above => None,
     };
     Some(LeastOxygen { least_mg_l, saturation_mg_l: saturation_mg_l(release_c, 0.0, run.pressure_atm) })
+}
+
+/// The latest moment at which water must leave the dam to be at a point by a moment, at a flow. `None` where the site
+/// has no river or no such point.
+pub fn latest(
+    site: &Site,
+    conditions: &Conditions,
+    flow_m3s: f64,
+    point: usize,
+    by: DateTime<FixedOffset>,
+) -> Option<DateTime<FixedOffset>> {
+    let river = site.river.as_ref()?;
+    let water_h = hours(river, conditions, by, &legs(river, 0), flow_m3s).get(point)?.water;
+    by.checked_sub_signed(TimeDelta::try_milliseconds(super::run::round(water_h * 3.6e6)?)?)
 }
 
 /// Where a value wanted lies among those a point can be brought to.

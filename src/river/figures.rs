@@ -1,4 +1,6 @@
 //! The figures of a day's water at one place, from its slices.
+//!
+//! Methods: `docs/methods.md`, section 6.
 
 use crate::water::saturation_mg_l;
 

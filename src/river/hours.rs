@@ -1,4 +1,6 @@
 //! When water, and a rise of the water, come to the points.
+//!
+//! Methods: `docs/methods.md`, section 6.
 
 use chrono::{DateTime, Datelike, FixedOffset};
 

@@ -20,7 +20,7 @@ mod water;
 mod tests;
 
 pub use back::{
-    Figure, Floor, LeastOxygen, MOST_OXYGEN_MG_L, RELEASES_C, Wanted, Window, least_oxygen, window,
+    Figure, Floor, LeastOxygen, MOST_OXYGEN_MG_L, RELEASES_C, Wanted, Window, latest, least_oxygen, window,
 };
 pub use conditions::Conditions;
 pub use course::{AtPoint, By, Course, Part, Place, course};

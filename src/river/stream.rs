@@ -1,4 +1,6 @@
 //! The water that a side stream or seepage brings at a moment.
+//!
+//! Methods: `docs/methods.md`, section 6.
 
 use chrono::{DateTime, Datelike, FixedOffset, NaiveDate, TimeDelta};
 

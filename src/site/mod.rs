@@ -120,6 +120,8 @@ pub struct CastChecks {
     pub stale_days: f64,
     /// More heat gained or lost between casts than weather brings, W per m2 of surface.
     pub heat_w_m2: f64,
+    /// The river below the dam may be this much colder or warmer than any water of the cast, C.
+    pub tailwater_c: f64,
 }
 
 impl Default for CastChecks {
@@ -133,6 +135,7 @@ impl Default for CastChecks {
             ageing_days: 7.0,
             stale_days: 14.0,
             heat_w_m2: 400.0,
+            tailwater_c: 1.0,
         }
     }
 }

@@ -5,7 +5,7 @@ use std::f64::consts::PI;
 use super::Aeration;
 use super::limits::{Avoid, Crew, GenerationLost};
 
-/// Openings nearer than this are one position.
+/// Openings nearer than this are one position (choice: round-off).
 pub const SAME_OPENING: f64 = 1e-6;
 
 /// Shape of a submerged opening.

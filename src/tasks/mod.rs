@@ -19,6 +19,7 @@ use crate::river::Conditions;
 use crate::site::Site;
 use crate::units::{Dimension, System};
 
+mod apart;
 mod casts;
 mod change;
 mod changed;
@@ -170,6 +171,7 @@ impl Context {
         let sources: Vec<&Source> = [&source].into_iter().chain(&around.sources).collect();
         let fingerprint = folder.fingerprint(&sources);
         let conditions = folder.conditions();
+        profile.flags.extend(apart::tailwater(&folder.site, &conditions, &profile));
         Self { folder, profile, on, on_from, age_days, fingerprint, system, conditions, said, source }
     }
 }

@@ -88,6 +88,47 @@ fn scenario_old_and_later_casts_are_flagged() {
     assert!(undated["profile"]["taken"].is_null());
 }
 
+/// A record of every hour of some dates at one temperature.
+fn tailwater(dates: &[&str], temperature_c: f64) -> String {
+    let rows = dates
+        .iter()
+        .flat_map(|date| (0..24).map(move |hour| format!("{date}T{hour:02}:00,{temperature_c}\n")));
+    "time,temperature_C\n".to_owned() + &rows.collect::<String>()
+}
+
+#[test]
+fn scenario_a_river_outside_all_waters_of_the_cast_is_flagged() {
+    // the cast of 2025-07-14 holds water of 6.2 to 22.0 C, and 1 C more is let pass
+    let flags = |site: &str, dates: &[&str], temperature_c: f64, task: &[&str]| {
+        let folder = Folder::new(site, &[("a.csv", CAST.as_bytes())]);
+        std::fs::write(folder.path().join("tailwater.csv"), tailwater(dates, temperature_c)).unwrap();
+        let answer = run(&[&[task[0], folder.named(), "--json"], &task[1..]].concat()).json();
+        said(&answer["profile"]["flags"], "tailwater-apart").map(str::to_owned)
+    };
+    let days = ["2025-07-13", "2025-07-14"];
+    for task in [&["pool"][..], &["mix"], &["rank", "--release", "30", "--step", "20%"]] {
+        let told = flags(SITE, &days, 23.2, task).unwrap();
+        let words = "a mean of 23.2 C on 2025-07-14, 1.2 C above the warmest water of the cast, 22.0 C";
+        assert!(told.contains(words), "{told}");
+        assert_eq!(flags(SITE, &days, 22.9, task), None, "{task:?}");
+    }
+    let cold = flags(SITE, &days, 5.0, &["mix"]).unwrap();
+    assert!(cold.contains("1.2 C below the coldest water of the cast, 6.2 C"), "{cold}");
+    assert_eq!(flags(SITE, &days, 5.3, &["mix"]), None);
+    // a day before or after speaks where the day itself was not recorded; two days before say nothing of the cast
+    assert!(flags(SITE, &["2025-07-15"], 25.0, &["mix"]).unwrap().contains("on 2025-07-15"));
+    assert_eq!(flags(SITE, &["2025-07-12", "2025-07-16"], 25.0, &["mix"]), None);
+    let loose = with(SITE, "cold_water: [12]", "cold_water: [12]\nchecks: { tailwater: 3.5 }");
+    assert_eq!(flags(&loose, &days, 25.0, &["mix"]), None);
+    // every text that speaks of the cast tells it too
+    let folder = Folder::usual();
+    std::fs::write(folder.path().join("tailwater.csv"), tailwater(&days, 25.0)).unwrap();
+    for task in [&["pool"][..], &["mix"], &["rank", "--release", "30", "--step", "20%"], &["river"]] {
+        let text = run(&[&[task[0], folder.named()], &task[1..]].concat()).out;
+        assert_eq!(text.matches("tailwater.csv has a mean").count(), 1, "{task:?}: {text}");
+    }
+}
+
 #[test]
 fn scenario_a_pool_above_full_and_a_cast_that_ends_early_are_flagged() {
     let high = with(SITE, "full: 62", "full: 58");

@@ -3,6 +3,7 @@
 #![expect(clippy::unwrap_used, reason = "helpers of tests stand outside test functions")]
 
 mod aerated;
+mod ahead;
 mod answered;
 mod casts;
 mod cautions;
@@ -14,7 +15,9 @@ mod loggers;
 mod new;
 mod rank;
 mod rank_answers;
+mod records;
 mod refused;
+mod river;
 mod since;
 mod sorrel;
 mod stories;

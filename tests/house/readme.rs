@@ -6,13 +6,20 @@ use assert_cmd::Command;
 
 use crate::{read, root};
 
-/// What the README shows, in its order: a file of screens with the heading of one of them, or a command.
-const SHOWN: [(&str, &str); 2] = [("docs/screens/mix.txt", "mix at 80x24"), ("gatemix rank ashlar", "")];
+/// What the README shows, in its order: a file of screens with the heading of one of them, or a command with the line
+/// before which its answer is cut.
+const SHOWN: [(&str, &str); 3] = [
+    ("docs/screens/mix.txt", "mix at 80x24"),
+    ("gatemix rank ashlar", ""),
+    ("gatemix river ashlar", "Day by day"),
+];
 
 /// A screen, or what a command prints.
 fn wanted((source, heading): (&str, &str)) -> String {
-    if heading.is_empty() {
-        return printed(source);
+    if source.starts_with("gatemix ") {
+        let whole = printed(source);
+        let cut = whole.lines().take_while(|line| heading.is_empty() || !line.starts_with(heading));
+        return cut.flat_map(|line| [line, "\n"]).collect();
     }
     let screens = read(source);
     let (_, screen) = screens.split_once(&format!("== {heading}\n")).unwrap();

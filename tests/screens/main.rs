@@ -2,6 +2,8 @@
 
 #![allow(clippy::unwrap_used, reason = "a test stops at its first surprise")]
 
+mod arriving;
+mod downstream;
 mod driver;
 mod held;
 mod kept;

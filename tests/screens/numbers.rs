@@ -10,17 +10,22 @@ use serde_json::Value;
 use crate::driver::Driver;
 use crate::sites::{ground, usual};
 
-const ON: &str = "2026-07-14 11:30";
+pub(crate) const ON: &str = "2026-07-14 11:30";
 /// The screen the numbers are read from.
 const SIZE: (u16, u16) = (120, 50);
 
 /// The answer of a command to what stands on the screens.
 fn answer(driver: &Driver, task: &str, words: &[String]) -> Value {
-    let draft = driver.session().draft();
-    let changed = &draft.changed;
-    let on = changed.on.map_or_else(|| ON.to_owned(), |on| on.format("%Y-%m-%d %H:%M").to_string());
+    answer_of(driver, task, "numbers", words)
+}
+
+/// The same of a site by its name.
+pub(crate) fn answer_of(driver: &Driver, task: &str, site: &str, words: &[String]) -> Value {
+    let session = driver.session();
+    let changed = &session.draft().changed;
+    let on = changed.on.unwrap_or(session.base.on).format("%Y-%m-%d %H:%M").to_string();
     let mut command = Command::new(env!("CARGO_BIN_EXE_gatemix"));
-    command.current_dir(ground()).args([task, "numbers", "--json", "--on", &on]).args(words);
+    command.current_dir(ground()).args([task, site, "--json", "--on", &on]).args(words);
     if let Some(pool_m) = changed.pool_m {
         command.args(["--pool", &format!("{pool_m}m")]);
     }
@@ -30,7 +35,7 @@ fn answer(driver: &Driver, task: &str, words: &[String]) -> Value {
 }
 
 /// The setting on the board, as it is typed to the command.
-fn typed(driver: &Driver) -> Vec<String> {
+pub(crate) fn typed(driver: &Driver) -> Vec<String> {
     let (site, draft) = (driver.session().base.site(), driver.session().draft());
     let given = draft.tried().unwrap();
     let mut words = Vec::new();
@@ -48,23 +53,23 @@ fn typed(driver: &Driver) -> Vec<String> {
 }
 
 /// How numbers are shown, worked out here on their own.
-struct Shown(System);
+pub(crate) struct Shown(pub(crate) System);
 
 impl Shown {
-    fn is_us(&self) -> bool {
+    pub(crate) fn is_us(&self) -> bool {
         self.0 == System::Us
     }
 
-    fn temperature(&self, value: &Value) -> String {
+    pub(crate) fn temperature(&self, value: &Value) -> String {
         let c = value.as_f64().unwrap();
         format!("{:.1}", if self.is_us() { 1.8 * c + 32.0 } else { c })
     }
 
-    fn degrees(&self) -> &'static str {
+    pub(crate) fn degrees(&self) -> &'static str {
         if self.is_us() { "F" } else { "C" }
     }
 
-    fn oxygen(value: &Value) -> String {
+    pub(crate) fn oxygen(value: &Value) -> String {
         format!("{:.1}", value.as_f64().unwrap())
     }
 
@@ -81,12 +86,12 @@ impl Shown {
 }
 
 /// A line that begins with a word, after marks.
-fn line<'a>(text: &'a str, word: &str) -> &'a str {
+pub(crate) fn line<'a>(text: &'a str, word: &str) -> &'a str {
     let begins = |l: &&str| l.trim_start_matches(['>', ' ']).starts_with(word);
     text.lines().find(begins).unwrap_or_else(|| panic!("no line begins with {word}:\n{text}"))
 }
 
-fn holds(line: &str, pieces: &[String]) {
+pub(crate) fn holds(line: &str, pieces: &[String]) {
     for piece in pieces {
         assert!(line.contains(piece.as_str()), "`{piece}` is not in `{line}`");
     }

@@ -9,25 +9,27 @@ use gatemix::units::System;
 use ratatui::buffer::Buffer;
 use ratatui::style::{Color, Modifier};
 
+use crate::downstream::{self, river};
 use crate::driver::{Driver, text};
 use crate::held::{doc, hold, stop_at, writing};
 use crate::sites::{CAST, SITE, ground, site, usual, with, without_oxygen};
 
-type Size = (u16, u16);
-const NORMAL: Size = (80, 24);
-const WIDE: Size = (120, 40);
-const SMALL: Size = (40, 10);
-const EVERY: [Size; 4] = [NORMAL, WIDE, SMALL, (1, 1)];
+pub(crate) type Size = (u16, u16);
+pub(crate) const NORMAL: Size = (80, 24);
+pub(crate) const WIDE: Size = (120, 40);
+pub(crate) const SMALL: Size = (40, 10);
+pub(crate) const EVERY: [Size; 4] = [NORMAL, WIDE, SMALL, (1, 1)];
 
 /// A name, what it is opened on, and keys with the heading of each screen they lead to.
-struct Scene {
-    name: &'static str,
-    driver: Box<dyn Fn() -> Driver>,
-    steps: &'static [(&'static str, &'static str)],
-    sizes: &'static [Size],
+pub(crate) struct Scene {
+    pub(crate) name: &'static str,
+    pub(crate) driver: Box<dyn Fn() -> Driver>,
+    pub(crate) steps: &'static [(&'static str, &'static str)],
+    pub(crate) sizes: &'static [Size],
 }
 
 const THREE: &[(&str, &str)] = &[("1", "pool"), ("2", "mix"), ("3", "rank")];
+const FOUR: &[(&str, &str)] = &[("1", "pool"), ("2", "mix"), ("3", "rank"), ("4", "river")];
 
 fn on(name: &'static str, site: impl Fn() -> String + 'static) -> Scene {
     let driver = Box::new(move || Driver::open(Some(&site()), NORMAL));
@@ -109,7 +111,12 @@ fn scenes() -> Vec<Scene> {
         usual_with("rejected", &[("3 x", "what is rejected")]),
         usual_with("drill", &[("3 l Down Space", "a gate is lost"), ("Enter", "ranked without it")]),
         usual_with("order", &[("3 c Down +", "order of the criteria")]),
-        Scene { sizes: &[WIDE], steps: THREE, ..usual_with("ascii", &[]) },
+        Scene {
+            name: "ascii",
+            driver: Box::new(|| Driver::open(Some(&river("ascii", &[])), NORMAL)),
+            steps: FOUR,
+            sizes: &[WIDE],
+        },
     ]
 }
 
@@ -131,7 +138,7 @@ fn unchanged_every_screen_is_the_one_in_the_docs() {
     }
     let mut differing = Vec::new();
     let mut names = BTreeSet::from(["README.md".to_owned()]);
-    for scene in scenes() {
+    for scene in scenes().into_iter().chain(downstream::scenes()) {
         let mut driver = (scene.driver)();
         if scene.name == "ascii" {
             driver.symbols(Symbols::Ascii);
@@ -232,7 +239,7 @@ fn scenario_a_stale_cast_is_told_by_its_word() {
 #[test]
 fn scenario_the_caution_is_on_every_screen_of_every_size() {
     let mut driver = Driver::open(Some(&usual("caution")), NORMAL);
-    for keys in ["1", "2", "3", "?", "Esc", ",", "Esc", "2 Enter"] {
+    for keys in ["1", "2", "3", "4", "4 v", "?", "Esc", ",", "Esc", "2 Enter"] {
         driver.resize(NORMAL).keys(keys);
         for size in [NORMAL, WIDE, SMALL, (72, 20), (72, 14), (24, 6)] {
             let shown = driver.resize(size).text();
@@ -244,8 +251,8 @@ fn scenario_the_caution_is_on_every_screen_of_every_size() {
 
 #[test]
 fn law_any_size_is_drawn_within_itself() {
-    let mut driver = Driver::open(Some(&usual("sizes")), NORMAL);
-    for keys in ["1", "2", "3", "3 x", "?", "Esc Esc 2 n", "Enter"] {
+    let mut driver = Driver::open(Some(&river("sizes", &[])), NORMAL);
+    for keys in ["1", "2", "3", "3 x", "4", "4 d", "4 v", "?", "Esc Esc 2 n", "Enter"] {
         driver.resize(NORMAL).keys(keys);
         for width in (0..=130).step_by(3) {
             for height in 0..=40 {

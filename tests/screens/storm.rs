@@ -165,7 +165,9 @@ fn storm(seed: u64, events: usize) {
             TermEvent::Resize(width, height) => driver.send(Event::Resize(width, height)),
             _ => {}
         }
-        for (lane, one_in) in [(Lane::Quick, ANSWERED), (Lane::Aside, ANSWERED), (Lane::Long, RANKED)] {
+        let lanes =
+            [(Lane::Quick, ANSWERED), (Lane::Aside, ANSWERED), (Lane::Down, ANSWERED), (Lane::Long, RANKED)];
+        for (lane, one_in) in lanes {
             if dice.below(one_in) != 0 {
                 continue;
             }

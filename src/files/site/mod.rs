@@ -310,6 +310,7 @@ fn checks(read: &In, map: &Map, raw: &mut Raw) {
     set_number(map, "ageing_days", &mut c.ageing_days);
     set_number(map, "stale_days", &mut c.stale_days);
     set_number(map, "heat_w_m2", &mut c.heat_w_m2);
+    read.set(map, "tailwater", Dimension::TemperatureDifference, &mut c.tailwater_c);
 }
 
 fn band(read: &In, map: &Map, raw: &mut Raw) {

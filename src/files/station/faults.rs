@@ -1,4 +1,6 @@
 //! What a sensor in a river gets wrong: spikes, a stuck value, days out of the water.
+//!
+//! Methods: `docs/methods.md`, section 7.
 
 use std::collections::BTreeMap;
 

@@ -3,6 +3,7 @@
 use serde::Serialize;
 
 use crate::mix::{Spread, TargetStanding};
+use crate::report::text::river::unit_si;
 use crate::target::DAM;
 use crate::tasks::Context;
 use crate::tasks::river::{Arriving, RiverAnswer, Timely, Way, Window};
@@ -86,11 +87,12 @@ struct WindowJson {
     point: String,
     low_c: Option<f64>,
     high_c: Option<f64>,
-    reachable: bool,
+    reachable: Option<bool>,
     low_set_by: Option<String>,
     high_set_by: Option<String>,
     oxygen_min_mg_l: Option<f64>,
     oxygen_set_by: Option<String>,
+    saturation_mg_l: Option<f64>,
     unknown: Vec<String>,
 }
 
@@ -98,6 +100,7 @@ struct WindowJson {
 struct DayJson {
     date: String,
     forecast: bool,
+    repeated: bool,
     air_c: Option<f64>,
     arrives: Vec<ArrivesJson>,
 }
@@ -117,8 +120,10 @@ struct TimelyJson {
     target: String,
     day: String,
     days: usize,
-    value_c: f64,
-    by_c: f64,
+    worst_on: String,
+    worst_value: f64,
+    worst_by: f64,
+    unit: &'static str,
     leave_by: String,
     late: bool,
     travel_h: f64,
@@ -219,6 +224,7 @@ fn window(context: &Context, w: &Window) -> WindowJson {
         high_set_by: rule(w.set_by[1]),
         oxygen_min_mg_l: w.oxygen_min_mg_l,
         oxygen_set_by: rule(w.oxygen_set_by),
+        saturation_mg_l: w.saturation_mg_l,
         unknown: w.unknown.clone(),
     }
 }
@@ -241,19 +247,23 @@ fn day(context: &Context, answer: &RiverAnswer, day: &Arriving) -> DayJson {
     DayJson {
         date: day.date.to_string(),
         forecast: day.forecast,
+        repeated: day.repeated,
         air_c: day.air_c,
         arrives: arrives.collect(),
     }
 }
 
 fn timely(context: &Context, t: &Timely) -> Option<TimelyJson> {
+    let rule = context.site().targets.get(t.target)?;
     Some(TimelyJson {
         point: name(context, t.point),
-        target: context.site().targets.get(t.target)?.name.clone(),
+        target: rule.name.clone(),
         day: t.day.to_string(),
         days: t.days,
-        value_c: t.value_c,
-        by_c: t.by_c,
+        worst_on: t.worst.0.to_string(),
+        worst_value: t.worst.1,
+        worst_by: t.worst.2,
+        unit: unit_si(rule),
         leave_by: t.leave_by.to_rfc3339(),
         late: t.late,
         travel_h: t.travel_h,

@@ -2,7 +2,7 @@
 
 use serde::Serialize;
 
-use crate::report::text::river::PROVISIONAL;
+use crate::report::text::river::{PROVISIONAL, REVIEWED, unit_si};
 use crate::target::{Held, Tally};
 use crate::tasks::Context;
 use crate::tasks::river::RiverAnswer;
@@ -17,6 +17,8 @@ pub(super) struct ObservedJson {
     days_under: u32,
     days_unknown: u32,
     longest_run: u32,
+    worst_by: Option<f64>,
+    unit: &'static str,
     worst_by_c: Option<f64>,
     worst_by_mg_l: Option<f64>,
     worst_by_share: Option<f64>,
@@ -59,6 +61,11 @@ pub(super) fn observed(context: &Context, answer: &RiverAnswer) -> Vec<ObservedJ
             [("temperature", &r.temperature), ("oxygen", &r.oxygen), ("oxygen_share", &r.oxygen_share)]
         {
             let Some(held) = held else { continue };
+            let unit = match of {
+                "oxygen" => "mg/L",
+                "oxygen_share" => "share",
+                _ => unit_si(rule),
+            };
             let worst = |kind: &str| held.all.worst.map(|w| w.0).filter(|_| of == kind);
             out.push(ObservedJson {
                 target: rule.name.clone(),
@@ -69,7 +76,9 @@ pub(super) fn observed(context: &Context, answer: &RiverAnswer) -> Vec<ObservedJ
                 days_under: held.all.under,
                 days_unknown: held.all.unknown,
                 longest_run: held.all.longest_run,
-                worst_by_c: worst("temperature"),
+                worst_by: held.all.worst.map(|w| w.0),
+                unit,
+                worst_by_c: worst("temperature").filter(|_| unit == "C"),
                 worst_by_mg_l: worst("oxygen"),
                 worst_by_share: worst("oxygen_share"),
                 worst_on: held.all.worst.map(|w| w.1.to_string()),
@@ -78,7 +87,7 @@ pub(super) fn observed(context: &Context, answer: &RiverAnswer) -> Vec<ObservedJ
                 seasons: held.seasons.iter().map(|(y, t)| stretch(y.to_string(), t)).collect(),
                 outside: outside(held),
                 provisional: r.provisional,
-                note: PROVISIONAL,
+                note: if r.provisional { PROVISIONAL } else { REVIEWED },
             });
         }
     }

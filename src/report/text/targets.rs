@@ -9,6 +9,9 @@ use crate::units::{Dimension, System, figure, in_system};
 use super::mix::missed;
 use super::{labelled, step, temperature};
 
+/// What a hard rule is told as where another comes before it.
+pub(super) const HELD_AS_WISH: &str = "held as a wish: a rule of smaller priority number leaves it nothing";
+
 /// Said wherever a target stands whose values are an example.
 pub const EXAMPLE: &str = "example values, not your licence's";
 
@@ -108,7 +111,10 @@ pub(super) fn value_words(s: &TargetStanding, rule: &Target, system: System) -> 
     let warm = s.value_c.filter(|_| !plain && rule.has_range()).map(one);
     let count = s.count.map(|count| match rule.statistic {
         Statistic::ShareOfDays(_) => format!("with today {count:.0} % of days above"),
-        Statistic::DaysInARow(_) => format!("with today {count:.0} days in a row above"),
+        Statistic::DaysInARow(_) => {
+            let days = if count < 1.5 && count > 0.5 { "day" } else { "days" };
+            format!("with today {count:.0} {days} in a row above")
+        }
         _ => format!("with today {count:.0} days above"),
     });
     let share = s.oxygen_share.filter(|_| rule.oxygen_min_share.is_some());
@@ -156,10 +162,7 @@ pub(super) fn standings(site: &Site, targets: &[TargetStanding], system: System)
         };
         out.push_str(&labelled("", &format!("{}; {cases}", standing_words(s, rule, system))));
         if s.wish && !rule.soft {
-            out.push_str(&labelled(
-                "",
-                "held as a wish: a rule of smaller priority number leaves it nothing",
-            ));
+            out.push_str(&labelled("", HELD_AS_WISH));
         }
         if let Some(words) = &s.words {
             out.push_str(&labelled("", &harmless(&in_system(words, system))));

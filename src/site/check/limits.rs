@@ -13,7 +13,7 @@ use crate::units::say;
 
 use super::outlets::{not_negative, positive};
 
-/// Sums of hours this near to a day are a day.
+/// Sums of hours this near to a day are a day (choice: round-off).
 const SAME_HOURS: f64 = 1e-6;
 
 pub(super) fn limits(raw: &Raw, pool: Option<&Pool>, problems: &mut Vec<Problem>) -> Limits {

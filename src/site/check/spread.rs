@@ -46,6 +46,7 @@ pub(super) fn spread(raw: &Raw, problems: &mut Vec<Problem>) {
         (c.stale_days, "stale_days"),
         (c.ageing_days, "ageing_days"),
         (c.heat_w_m2, "heat_w_m2"),
+        (c.tailwater_c, "tailwater"),
     ] {
         positive(Some(value), format!("checks.{key}"), key, problems);
     }

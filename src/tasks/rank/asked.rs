@@ -6,7 +6,7 @@ use crate::rank::Criterion;
 use crate::tasks::{Context, Failure};
 use crate::units::Dimension;
 
-/// Step of the split where none is asked for, as a share of the release (design).
+/// Step of the split where none is asked for, as a share of the release (choice).
 const STEP: f64 = 0.05;
 /// Finest step (choice).
 const FINEST: f64 = 0.01;

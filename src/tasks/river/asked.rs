@@ -1,13 +1,15 @@
 //! The release each point would need for its rules today.
+//!
+//! Methods: `docs/methods.md`, section 6.
 
 use crate::mix::RuleToday;
-use crate::river::{self, Floor, Part, Wanted, course, least_oxygen};
-use crate::target::{Air, Figure, OxygenFigure, Today};
+use crate::river::{self, Floor, Part, RELEASES_C, Wanted, course, least_oxygen};
+use crate::target::{Air, Figure, OxygenFigure, Target, Today};
 use crate::tasks::Context;
 
 use super::Way;
 
-/// Ends of a window that cross by less still meet, C: round-off of a root.
+/// Ends of a window that cross by less still meet, C (choice: round-off of a root).
 const NEAR_C: f64 = 1e-6;
 
 /// The release that keeps a point inside its rules today, as far as one does.
@@ -21,13 +23,17 @@ pub struct Window {
     pub high_c: Option<f64>,
     /// Rules, by their index in the targets, that set the ends.
     pub set_by: [Option<usize>; 2],
-    /// Whether any release keeps them all.
-    pub reachable: bool,
+    /// Whether any release keeps them all; `None` where nothing of it can be told.
+    pub reachable: Option<bool>,
+    /// Whether a rule asks anything of the temperature.
+    pub ranged: bool,
     /// Least oxygen of the release that keeps the floors at the temperature of the way spoken of, mg/L; `None` where
     /// there is no floor or it cannot be told.
     pub oxygen_min_mg_l: Option<f64>,
     /// The rule that sets it.
     pub oxygen_set_by: Option<usize>,
+    /// Oxygen at saturation below the dam at that temperature, mg/L.
+    pub saturation_mg_l: Option<f64>,
     /// What the point asks of its own temperature today, C, all its rules together.
     pub asked_c: [Option<f64>; 2],
     /// Its floor, mg/L.
@@ -43,13 +49,16 @@ pub(super) fn windows(context: &Context, way: &Way) -> Vec<Window> {
     let points = site.river.as_ref().map_or(0, |r| r.points.len());
     let places = std::iter::once(None).chain((0..points).map(Some));
     let of = |point: Option<usize>| {
-        let here: Vec<&RuleToday> = rules
-            .iter()
-            .filter(|r| r.point == point && site.targets.get(r.target).is_some_and(|t| !t.soft))
-            .collect();
+        let here: Vec<&RuleToday> =
+            rules.iter().filter(|r| r.point == point && !is_wish(way, r.target)).collect();
         (!here.is_empty()).then(|| window(context, way, point, &here))
     };
     places.filter_map(of).collect()
+}
+
+/// Whether a rule is held as a wish: what is only wished for narrows no window.
+fn is_wish(way: &Way, target: usize) -> bool {
+    way.targets.iter().any(|s| s.target == target && s.wish)
 }
 
 /// The window of a place under its rules.
@@ -59,9 +68,11 @@ fn window(context: &Context, way: &Way, point: Option<usize>, rules: &[&RuleToda
         low_c: None,
         high_c: None,
         set_by: [None, None],
-        reachable: true,
+        reachable: Some(true),
+        ranged: rules.iter().any(|r| context.site().targets.get(r.target).is_some_and(Target::has_range)),
         oxygen_min_mg_l: None,
         oxygen_set_by: None,
+        saturation_mg_l: None,
         asked_c: [None, None],
         floor_mg_l: None,
         unknown: Vec::new(),
@@ -75,10 +86,15 @@ fn window(context: &Context, way: &Way, point: Option<usize>, rules: &[&RuleToda
             out.raise(rule.target, air, floor(context, way, point, air));
         }
     }
-    out.reachable &= out.low_c.zip(out.high_c).is_none_or(|(low, high)| low <= high + NEAR_C);
+    let ordered = out.low_c.zip(out.high_c).is_none_or(|(low, high)| low <= high + NEAR_C);
+    out.reachable = out.reachable.map(|reachable| reachable && ordered);
     out.asked_c = asked(context, way, &out, rules);
-    if !out.reachable {
+    if out.reachable == Some(false) {
         (out.low_c, out.high_c) = (None, None);
+    }
+    let nothing = out.low_c.is_none() && out.high_c.is_none() && out.oxygen_min_mg_l.is_none();
+    if nothing && !out.unknown.is_empty() && out.reachable == Some(true) {
+        out.reachable = None;
     }
     out.unknown.dedup();
     out
@@ -94,7 +110,7 @@ impl Window {
                 return;
             }
         };
-        self.reachable &= ends.reachable;
+        self.reachable = self.reachable.map(|reachable| reachable && ends.reachable);
         if ends.step {
             self.unknown.push("the point passes an end of its range in a step".to_owned());
         }
@@ -107,9 +123,14 @@ impl Window {
     }
 
     /// Takes the oxygen in that a floor asks of the release.
-    fn raise(&mut self, target: usize, air: &Air, asked: Result<(f64, f64), String>) {
+    fn raise(&mut self, target: usize, air: &Air, asked: Result<Breath, String>) {
         match asked {
-            Ok((least, floor)) => {
+            Ok(Breath { least_mg_l: None, .. }) => {
+                self.reachable = Some(false);
+                self.unknown.push("no oxygen of the release keeps its floor".to_owned());
+            }
+            Ok(Breath { least_mg_l: Some(least), floor_mg_l: floor, saturation_mg_l }) => {
+                self.saturation_mg_l = Some(saturation_mg_l);
                 if self.oxygen_min_mg_l.is_none_or(|l| least > l) {
                     (self.oxygen_min_mg_l, self.oxygen_set_by) = (Some(least), Some(target));
                 }
@@ -132,14 +153,22 @@ struct Ends {
 
 /// Releases that keep a place in what a rule asks of today.
 fn ends(context: &Context, way: &Way, point: Option<usize>, today: &Today) -> Result<Ends, String> {
-    let (low_c, high_c) = (today.low_c, today.high_c);
+    let (low_c, high_c) = (today.low_asked_c(), today.high_c);
+    // a figure that counts no lower than its base cannot be brought below it
+    if today.base_c.zip(high_c).is_some_and(|(base, high)| high < base) {
+        return Ok(Ends { low_c: None, high_c: None, reachable: false, step: false });
+    }
     if low_c.is_none() && high_c.is_none() {
         return Ok(Ends { low_c, high_c, reachable: true, step: false });
     }
     if today.figure == Figure::HourlyChange {
         return Err("a change from hour to hour follows from no one release temperature".to_owned());
     }
-    let Some(point) = point else { return Ok(Ends { low_c, high_c, reachable: true, step: false }) };
+    let Some(point) = point else {
+        let (coldest, warmest) = RELEASES_C;
+        let reachable = low_c.is_none_or(|low| low <= warmest) && high_c.is_none_or(|high| high >= coldest);
+        return Ok(Ends { low_c, high_c, reachable, step: false });
+    };
     let there = way.course.as_ref().and_then(|c| c.points.iter().find(|p| p.point == point));
     let Some(there) = there else { return Err("what arrives there is not known".to_owned()) };
     if today.figure != Figure::Mean && there.figures.range_c.is_none() {
@@ -173,14 +202,25 @@ fn flows(way: &Way) -> Vec<(f64, f64)> {
     way.released().iter().map(|p| (p.hours, p.flow_m3s)).collect()
 }
 
-/// Least oxygen of the release for a floor at a place, and the floor, both mg/L.
-fn floor(context: &Context, way: &Way, point: Option<usize>, air: &Air) -> Result<(f64, f64), String> {
+/// What a floor at a place asks of the oxygen of the release, mg/L.
+struct Breath {
+    /// Least oxygen of the release; `None` where none serves.
+    least_mg_l: Option<f64>,
+    /// The floor itself.
+    floor_mg_l: f64,
+    /// Saturation below the dam at the temperature of the release.
+    saturation_mg_l: f64,
+}
+
+/// What a floor at a place asks of the oxygen of the release.
+fn floor(context: &Context, way: &Way, point: Option<usize>, air: &Air) -> Result<Breath, String> {
     let site = context.site();
     let release_c = way.temperature_c();
+    let salt = way.parts.first().map_or(0.0, |p| p.release.salt_g_per_kg);
+    let saturation_mg_l = site.saturation_below_mg_l(release_c, salt);
     let Some(point) = point else {
-        let salt = way.parts.first().map_or(0.0, |p| p.release.salt_g_per_kg);
-        let floor = air.floor_mg_l(site.saturation_below_mg_l(release_c, salt));
-        return Ok((floor, floor));
+        let floor_mg_l = air.floor_mg_l(saturation_mg_l);
+        return Ok(Breath { least_mg_l: Some(floor_mg_l), floor_mg_l, saturation_mg_l });
     };
     let floor = match (air.figure, air.share) {
         (OxygenFigure::Mean, false) => Floor::Mean(air.floor),
@@ -190,9 +230,8 @@ fn floor(context: &Context, way: &Way, point: Option<usize>, air: &Air) -> Resul
     };
     let (conditions, date) = (&context.conditions, context.on.date_naive());
     let found = least_oxygen(site, conditions, date, &flows(way), (point, release_c), floor);
-    match found.map(|f| f.least_mg_l) {
-        Some(Some(least)) => Ok((least, air.floor)),
-        Some(None) => Err("no oxygen of the release keeps its floor".to_owned()),
+    match found {
+        Some(found) => Ok(Breath { least_mg_l: found.least_mg_l, floor_mg_l: air.floor, saturation_mg_l }),
         None => Err("the oxygen there is not known".to_owned()),
     }
 }
@@ -203,7 +242,7 @@ fn asked(context: &Context, way: &Way, window: &Window, rules: &[&RuleToday]) ->
         let means = rules.iter().filter_map(|r| r.today.as_ref().ok()).filter(|t| t.figure == Figure::Mean);
         means.filter_map(end).reduce(stricter)
     };
-    let Some(point) = window.point.filter(|_| window.reachable) else {
+    let Some(point) = window.point.filter(|_| window.reachable == Some(true)) else {
         return [of_means(|t| t.low_c, f64::max), of_means(|t| t.high_c, f64::min)];
     };
     let mean_c = |release_c: f64| {

@@ -111,7 +111,7 @@ pub fn downstream(
     };
     if let Some(way) = answer.spoken() {
         let windows = asked::windows(context, way);
-        let (days, timely) = (ahead::days(context, &answer.ways), ahead::timely(context, way));
+        let (days, timely) = (ahead::days(context, &answer.ways), ahead::timely(context, &answer.ways, way));
         let flags: Vec<Problem> = way.course.iter().flat_map(|c| c.flags.iter().cloned()).collect();
         answer.notes.extend(flags);
         (answer.windows, answer.days, answer.timely) = (windows, days, timely);

@@ -1,7 +1,7 @@
 //! A release on its way down the river.
 
 use crate::mix::{Blend, Conflict, Mix, Setting, Spread, TargetStanding};
-use crate::river::{Course, Link, Part, course, links};
+use crate::river::{AtPoint, Course, Curve, Part, course, links};
 use crate::tasks::Context;
 use crate::tasks::MixAnswer;
 use crate::tasks::rank::Shown;
@@ -69,8 +69,9 @@ impl Way {
             Some(day) => day.blocks.iter().map(|b| (b.share, &b.setting, &b.mix)).collect(),
             None => vec![(1.0, &answer.setting, &answer.mix)],
         };
-        let targets = day.map_or(&answer.mix.targets, |day| &day.held.targets);
-        Self::new(context, which, &parts, targets, &answer.mix.conflicts)
+        let (targets, conflicts) = day
+            .map_or((&answer.mix.targets, &answer.mix.conflicts), |d| (&d.held.targets, &d.held.conflicts));
+        Self::new(context, which, &parts, targets, conflicts)
     }
 
     /// Of a ranked mix.
@@ -97,7 +98,7 @@ impl Way {
             .collect();
         let (site, date) = (context.site(), context.on.date_naive());
         let course = course(site, &context.conditions, date, &released(&parts));
-        let spreads = if course.is_some() { spreads(context, &parts) } else { Vec::new() };
+        let spreads = course.as_ref().map_or_else(Vec::new, |course| spreads(context, &parts, course));
         let (targets, conflicts) = (targets.to_vec(), conflicts.to_vec());
         Self { which, parts, targets, conflicts, course, spreads }
     }
@@ -148,21 +149,43 @@ fn released(parts: &[WayPart]) -> Vec<Part> {
     parts.iter().map(part).collect()
 }
 
-/// The perturbed cases of the release as every point sees them, as time means.
-fn spreads(context: &Context, parts: &[WayPart]) -> Vec<Spread> {
-    let cases = over_day(parts);
-    let warmth = || cases.iter().map(|c| c.0);
+/// The perturbed cases of the release as every point sees them, as time means: each differs from what arrives by what
+/// the point makes of the difference of the release.
+fn spreads(context: &Context, parts: &[WayPart], course: &Course) -> Vec<Spread> {
+    let count = parts.iter().map(|p| p.spread.cases.len()).min().unwrap_or(0);
+    let centre = by_flow(parts, |p| Some((p.release.temperature_c, p.release.oxygen_below_mg_l)));
+    let Some(centre) = centre else { return Vec::new() };
+    let cases: Vec<(f64, Option<f64>)> =
+        (0..count).filter_map(|i| by_flow(parts, |p| p.spread.cases.get(i).copied())).collect();
+    let warmth = || cases.iter().map(|c| c.0).chain([centre.0]);
     let Some(span_c) = warmth().reduce(f64::min).zip(warmth().reduce(f64::max)) else { return Vec::new() };
     let flows: Vec<(f64, f64)> = parts.iter().map(|p| (DAY_H * p.share, p.release.flow_m3s)).collect();
     let links = links(context.site(), &context.conditions, context.on.date_naive(), &flows, span_c);
-    let seen = |link: &Link| {
+    let seen = |there: &AtPoint| {
+        let link = links.iter().find(|link| link.point == Some(there.point));
         let case = |&(c, mg_l): &(f64, Option<f64>)| {
-            let oxygen = link.oxygen_mean.zip(mg_l).map(|((without, each), o)| without.at(c) + each * o);
-            (link.mean_c.at(c), oxygen)
+            let shift = |curve: Curve| curve.at(c) - curve.at(centre.0);
+            let warmer = link.map_or(0.0, |link| shift(link.mean_c));
+            let aired = link.and_then(|link| link.oxygen_mean).zip(mg_l.zip(centre.1));
+            let richer = aired.map(|((without, each), (o, at))| shift(without) + each * (o - at));
+            let oxygen = there.figures.oxygen_mean_mg_l.zip(richer).map(|(o, by)| (o + by).max(0.0));
+            (there.figures.mean_c + warmer, oxygen)
         };
         Spread { cases: cases.iter().map(case).collect() }
     };
-    links.iter().map(seen).collect()
+    course.points.iter().map(seen).collect()
+}
+
+/// Temperature (C) and oxygen (mg/L) over the parts of a day, by their flow.
+fn by_flow(
+    parts: &[WayPart],
+    of: impl Fn(&WayPart) -> Option<(f64, Option<f64>)>,
+) -> Option<(f64, Option<f64>)> {
+    let flow: f64 = parts.iter().map(|p| p.share * p.release.flow_m3s).sum();
+    let weight = |p: &WayPart| p.share * p.release.flow_m3s / flow;
+    let warmth = parts.iter().map(|p| Some(weight(p) * of(p)?.0)).sum::<Option<f64>>()?;
+    let oxygen = parts.iter().map(|p| Some(weight(p) * of(p)?.1?)).sum();
+    (flow > 0.0).then_some((warmth, oxygen))
 }
 
 /// Time means of temperature (C) and oxygen (mg/L) of the perturbed cases.

@@ -133,6 +133,8 @@ fn mixed(model: &mut Model, mixed: Result<Box<Computed>, Failure>) -> Vec<Effect
         session.shown = Some(Shown { on, mixes });
         // a target that is not valid on the date has no row any more
         session.mix.cell = session.mix.cell.moved(context.site(), context.on.date_naive(), 0, 0);
+        let rules = super::rules(session).len();
+        session.river.rule = session.river.rule.min(rules.saturating_sub(1));
     }
     match solved {
         // who went on to another try meanwhile has it left alone

@@ -18,7 +18,7 @@ use super::{Effect, ask_mixes, change, complain, mix_rows, recompute, say};
 const FLOW: [(f64, f64); 2] = [(10.0, 100.0), (0.5, 5.0)];
 /// The same of the pool, ft and m (choice).
 const POOL: [(f64, f64); 2] = [(0.5, 5.0), (0.1, 1.0)];
-/// The same of a temperature, F and C (choice).
+/// The same of a temperature or a difference of them, F and C (choice).
 const TEMPERATURE: [(f64, f64); 2] = [(0.5, 2.0), (0.25, 1.0)];
 /// The same of oxygen, mg/L (choice).
 const OXYGEN: (f64, f64) = (0.5, 2.0);
@@ -241,9 +241,10 @@ fn nudged(model: &mut Model, cell: Cell, nudge: Nudge) -> Vec<Effect> {
         }
         Cell::Low(i) | Cell::Preferred(i) | Cell::High(i) => {
             let target = targets(session, session.draft()).into_iter().nth(i);
+            let dimension = target.as_ref().map_or(Dimension::Temperature, Target::dimension);
             let any = target.and_then(|t| t.preferred_c.or(t.low_c).or(t.high_c));
             match now.or(any) {
-                Some(value) => of(TEMPERATURE, Dimension::Temperature)(value),
+                Some(value) => of(TEMPERATURE, dimension)(value),
                 None => return typing(model, cell),
             }
         }
@@ -286,8 +287,10 @@ fn typing(model: &mut Model, cell: Cell) -> Vec<Effect> {
             now.map_or_else(String::new, |v| plain(v, Dimension::Flow, fine))
         }
         Cell::Pool => now.map_or_else(String::new, |v| plain(v, Dimension::Length, 1 + fine)),
-        Cell::Low(_) | Cell::Preferred(_) | Cell::High(_) => {
-            now.map_or_else(String::new, |v| plain(v, Dimension::Temperature, 1))
+        Cell::Low(i) | Cell::Preferred(i) | Cell::High(i) => {
+            let target = targets(session, session.draft()).into_iter().nth(i);
+            let dimension = target.map_or(Dimension::Temperature, |t| t.dimension());
+            now.map_or_else(String::new, |v| plain(v, dimension, 1))
         }
         Cell::Oxygen(_) => now.map_or_else(String::new, |v| plain(v, Dimension::Concentration, 1)),
     };

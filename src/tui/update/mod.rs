@@ -24,7 +24,7 @@ pub(super) use river::rules;
 
 use super::keys::{Action, Place, action};
 use super::model::{Choice, Draft, Likes, Message, Model, Over, Screen, Session, Stage, Under};
-use super::view::{answer_text, mix_rows, rank_rows, river_rows};
+use super::view::{answer_text, mix_rows, rank_rows, river_rows, rule_in_sight};
 use super::work::{Lane, On, Seen, Sent, Work};
 
 /// A message.
@@ -227,7 +227,8 @@ fn back(model: &mut Model) -> Vec<Effect> {
     }
     if let Some(under) = model.long.take() {
         say(model, "stopped; what is shown was computed before");
-        return vec![Effect::Stop(Lane::Long, under.generation + 1)];
+        let stop = Effect::Stop(Lane::Long, under.generation + 1);
+        return std::iter::once(stop).chain(ask_river(model)).collect();
     }
     model.message = None;
     if model.session().is_some_and(|s| s.screen == Screen::Rank) {

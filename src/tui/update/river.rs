@@ -3,7 +3,7 @@
 use super::super::keys::Action;
 use super::super::model::{Model, RiverPage, Row, Session, rows};
 use super::mix::{back_and_forth, edit};
-use super::{Effect, river_rows};
+use super::{Effect, river_rows, rule_in_sight};
 
 /// Lines of a page (choice).
 const PAGE: usize = 5;
@@ -70,6 +70,10 @@ fn choose(model: &mut Model, to: impl Fn(usize) -> usize, right: isize) {
         let view = &mut session.river;
         view.rule = to(view.rule).min(count.saturating_sub(1));
         view.column = view.column.saturating_add_signed(right).min(CELLS - 1);
+    }
+    let from = rule_in_sight(model);
+    if let Some(session) = model.session_mut() {
+        session.river.scroll = from;
     }
 }
 

@@ -109,6 +109,12 @@ pub(super) fn river_rows(model: &Model) -> usize {
     model.session().map_or(0, |session| river::last(model, session, frame::parts(model, area).body))
 }
 
+/// The first line of the rules with which the one chosen is in sight.
+pub(super) fn rule_in_sight(model: &Model) -> usize {
+    let area = Rect::new(0, 0, model.size.0, model.size.1);
+    model.session().map_or(0, |session| river::in_sight(model, session, frame::parts(model, area).body))
+}
+
 /// The furthest that what is said on the mix screen can be scrolled.
 pub(super) fn mix_rows(model: &Model) -> usize {
     let area = Rect::new(0, 0, model.size.0, model.size.1);

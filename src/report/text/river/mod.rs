@@ -1,13 +1,15 @@
 //! What arrives downstream, in words.
 
 mod ahead;
+mod amounts;
 mod places;
 mod record;
 mod rules;
 
 use std::fmt::Write as _;
 
-use crate::problem::{Problem, harmless};
+use crate::problem::{Problem, Weight, harmless};
+use crate::report::flags_of;
 use crate::site::Surface;
 use crate::tasks::Context;
 use crate::tasks::river::{RiverAnswer, Way, Which};
@@ -16,8 +18,9 @@ use crate::units::System;
 use super::{flow, labelled, list, setting_words, wrapped};
 
 pub use ahead::{days, timely_words};
+pub use amounts::unit_si;
 pub use places::{PlaceRow, places, stage_words, window_words};
-pub use record::{PROVISIONAL, SIGNS, calendar, record};
+pub use record::{PROVISIONAL, REVIEWED, SIGNS, calendar, record};
 pub use rules::{RuleRow, RuleStanding, conflicts, rules};
 
 /// Columns of a label of the table of places, and of each place.
@@ -31,13 +34,15 @@ pub(super) fn body(context: &Context, answer: &RiverAnswer) -> String {
     for way in &answer.ways {
         out.push_str(&labelled(title(way.which), &set_words(context, way, system)));
     }
-    out.push_str(&labelled("River", &weather_words(context)));
+    let leaves = context.on.format("%Y-%m-%d");
+    let of = format!("{}; at points the water that leaves the dam on {leaves}", weather_words(context));
+    out.push_str(&labelled("River", &of));
     out.push('\n');
     out.push_str(&table(&places(context, answer, system)));
     out.push('\n');
     out.push_str(&needed(context, answer, system));
     out.push_str(&standings(context, answer, system));
-    for (i, line) in days(context, answer, system).into_iter().enumerate() {
+    for (i, line) in days(context, answer, system, super::WIDTH - 2).into_iter().enumerate() {
         out.push_str(if i == 0 { "Day by day, each release held\n  " } else { "  " });
         out.push_str(&line);
         out.push('\n');
@@ -49,6 +54,10 @@ pub(super) fn body(context: &Context, answer: &RiverAnswer) -> String {
     }
     out.push_str(&recorded);
     out.push('\n');
+    // what is said of a file beside the casts is a note of the river already
+    let mut cast = flags_of(&context.profile.flags);
+    cast.retain(|flag| flag.weight != Weight::Note && !answer.notes.contains(flag));
+    out.push_str(&list("The cast", &cast, true, system));
     let notes: Vec<&Problem> = answer.notes.iter().collect();
     out.push_str(&list("The river", &notes, false, system));
     out

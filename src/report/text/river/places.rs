@@ -27,6 +27,9 @@ pub struct PlaceRow {
 /// A change of stage smaller than this is none, m: the figure shown would be zero (choice).
 const SAME_STAGE_M: f64 = 0.05;
 
+/// Oxygen that would be shown as none, mg/L (half of the digit shown).
+const LEAST_SHOWN_MG_L: f64 = 0.05;
+
 /// Where nothing is to be told.
 const NONE: &str = "-";
 
@@ -46,7 +49,7 @@ pub fn places(context: &Context, answer: &RiverAnswer, system: System) -> Vec<Pl
         };
     let mut out = vec![
         row(("", "", 0), "dam", &|i, p| format!("{} {}", i + 1, harmless(&p.name))),
-        row(("from the dam", "distance", 0), NONE, &|_, p| distance(p)),
+        row(("from the dam", "distance", 1), NONE, &|_, p| distance(p)),
     ];
     if let Some(course) = answer.spoken().and_then(|w| w.course.as_ref()) {
         let hours = |of: fn(&AtPoint) -> f64| {
@@ -54,15 +57,18 @@ pub fn places(context: &Context, answer: &RiverAnswer, system: System) -> Vec<Pl
                 course.points.get(i).map_or_else(|| NONE.into(), |a| format!("{:.1} h", of(a)))
             }
         };
-        out.push(row(("water takes", "water", 0), NONE, &hours(|a| a.travel_h)));
-        out.push(row(("first rise possible", "rise from", 1), NONE, &hours(|a| a.rise_first_h)));
-        out.push(row(("bulk of a rise", "rise bulk", 1), NONE, &hours(|a| a.rise_h)));
-        out.push(row(("warning time", "warning", 4), NONE, &|_, p| {
+        out.push(row(("water takes", "water", 1), NONE, &hours(|a| a.travel_h)));
+        out.push(row(("first rise possible", "rise from", 2), NONE, &hours(|a| a.rise_first_h)));
+        out.push(row(("bulk of a rise", "rise bulk", 2), NONE, &hours(|a| a.rise_h)));
+        out.push(row(("warning time", "warning", 5), NONE, &|_, p| {
             p.warning_h.map_or_else(|| NONE.into(), |h| format!("{h:.1} h"))
         }));
     }
     for way in &answer.ways {
         out.extend(of_way(way, points.len(), system));
+        if way.which == Which::Tried {
+            out.extend(against_now(answer, points.len(), system));
+        }
     }
     out
 }
@@ -94,10 +100,10 @@ fn of_way(way: &Way, points: usize, system: System) -> Vec<PlaceRow> {
         row(("mean", 0), temperature(way.temperature_c(), system), &|i| {
             Some(temperature(at(i)?.figures.mean_c, system))
         }),
-        row(("10-90 %", 3), band(of_day.band_c()).unwrap_or_else(|| NONE.into()), &|i| {
+        row(("10-90 %", 4), band(of_day.band_c()).unwrap_or_else(|| NONE.into()), &|i| {
             band(way.spreads.get(i)?.band_c())
         }),
-        row(("greatest", 2), temperature(greatest, system), &|i| {
+        row(("greatest", 3), temperature(greatest, system), &|i| {
             let (greatest, _) = at(i)?.figures.range_c?;
             Some(temperature(greatest, system))
         }),
@@ -109,29 +115,76 @@ fn of_way(way: &Way, points: usize, system: System) -> Vec<PlaceRow> {
     out
 }
 
+/// How much warmer than now, and how much richer in oxygen, the setting tried is at every place.
+fn against_now(answer: &RiverAnswer, points: usize, system: System) -> Vec<PlaceRow> {
+    let of = |which: Which| answer.ways.iter().find(|w| w.which == which);
+    let Some((tried, now)) = of(Which::Tried).zip(of(Which::Now)) else { return Vec::new() };
+    let warmth = |way: &Way, place: usize| match place.checked_sub(1) {
+        None => Some(way.temperature_c()),
+        Some(point) => Some(way.course.as_ref()?.points.get(point)?.figures.mean_c),
+    };
+    let air = |way: &Way, place: usize| match place.checked_sub(1) {
+        None => way.oxygen_mg_l(),
+        Some(point) => way.course.as_ref()?.points.get(point)?.figures.oxygen_mean_mg_l,
+    };
+    let unit = system.unit(Dimension::TemperatureDifference);
+    let row = |label: &str, short: &str, spare: u8, cell: &dyn Fn(usize) -> Option<String>| PlaceRow {
+        label: label.to_owned(),
+        short: short.to_owned(),
+        spare,
+        of: Some(Which::Tried),
+        cells: (0..=points).map(|place| cell(place).unwrap_or_else(|| NONE.into())).collect(),
+    };
+    vec![
+        row("tried less now", "less N", 0, &|place| {
+            let by = unit.from_si(warmth(tried, place)? - warmth(now, place)?);
+            Some(format!("{} {}", signed(by), unit.symbol()))
+        }),
+        row("oxygen less now", "O2 less N", 2, &|place| {
+            Some(format!("{} mg/L", signed(air(tried, place)? - air(now, place)?)))
+        }),
+    ]
+}
+
+/// With its sign; what rounds to nothing has none.
+fn signed(value: f64) -> String {
+    if value.abs() < 0.05 { "0.0".to_owned() } else { format!("{value:+.1}") }
+}
+
 /// The release a point would need, in words: `50.0 to 57.0 F, oxygen from 5.1 mg/L`.
 pub fn window_words(window: &Window, system: System) -> String {
     let unit = system.unit(Dimension::Temperature);
     let shown = |c: f64| temperature(c, system);
     let mut parts = Vec::new();
-    if window.reachable {
+    if window.reachable != Some(false) {
         match (window.low_c, window.high_c) {
             (Some(low), Some(high)) => parts.push(format!("{} to {}", figure(low, unit, 1), shown(high))),
             (Some(low), None) => parts.push(format!("from {}", shown(low))),
             (None, Some(high)) => parts.push(format!("to {}", shown(high))),
-            (None, None) if window.asked_c == [None, None] => {}
-            (None, None) => parts.push("any temperature".to_owned()),
+            (None, None) if window.ranged && window.unknown.is_empty() => {
+                parts.push("any temperature".to_owned());
+            }
+            (None, None) => {}
         }
     } else {
-        parts.push("OUT OF REACH: no release keeps its range".to_owned());
+        parts.push("OUT OF REACH: no release keeps its rules".to_owned());
     }
     match window.oxygen_min_mg_l {
-        Some(least) if least < 0.05 => parts.push("any oxygen".to_owned()),
-        Some(least) => parts.push(format!("oxygen from {least:.1} mg/L")),
+        Some(least) if least < LEAST_SHOWN_MG_L => parts.push("any oxygen".to_owned()),
+        Some(least) => {
+            let above = window.saturation_mg_l.is_some_and(|s| least > s);
+            let words = if above { ", above saturation there" } else { "" };
+            parts.push(format!("oxygen from {least:.1} mg/L{words}"));
+        }
         None => {}
     }
-    parts.extend(window.unknown.iter().map(|words| harmless(words)));
-    if parts.is_empty() { "nothing is asked".to_owned() } else { parts.join(", ") }
+    let unknown = window.unknown.iter().map(|words| harmless(words)).collect::<Vec<_>>().join(", ");
+    match (parts.is_empty(), unknown.is_empty()) {
+        (true, true) => "nothing is asked".to_owned(),
+        (true, false) => format!("UNKNOWN: {unknown}"),
+        (false, true) => parts.join(", "),
+        (false, false) => format!("{}; UNKNOWN in part: {unknown}", parts.join(", ")),
+    }
 }
 
 /// How the stage at a point differs from now, in words; that it is not computed where no rating is given.

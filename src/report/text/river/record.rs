@@ -6,13 +6,35 @@ use crate::problem::harmless;
 use crate::target::{Held, Mark, Standing, Tally, Target};
 use crate::tasks::Context;
 use crate::tasks::river::RiverAnswer;
-use crate::units::{Dimension, System};
+use crate::units::System;
 
 use super::super::wrapped_at;
 use super::rules::{asks, floor, source};
 
 /// What every statement about a record carries.
 pub const PROVISIONAL: &str = "from provisional data; not a compliance determination";
+
+/// The same where every reading was looked through.
+pub const REVIEWED: &str = "from data marked as reviewed; not a compliance determination";
+
+/// What a record is held against.
+#[derive(Clone, Copy)]
+enum Of {
+    Range,
+    Oxygen,
+    Share,
+}
+
+impl Of {
+    /// How far outside.
+    fn by(self, rule: &Target, by: f64, system: System) -> String {
+        match self {
+            Self::Range => super::amounts::by(rule, by, system),
+            Self::Oxygen => format!("{by:.1} mg/L"),
+            Self::Share => format!("{:.0} % of saturation", 100.0 * by),
+        }
+    }
+}
 
 /// Signs of the calendar, with their meaning.
 pub const SIGNS: &str = ". inside  # above  v below  ? too little recorded";
@@ -28,18 +50,20 @@ pub fn record(context: &Context, answer: &RiverAnswer, system: System, width: us
         let Some(rule) = context.site().targets.get(observed.target) else { continue };
         let record = &observed.record;
         let parts = [
-            (&record.temperature, asks(rule, system), unit(rule, system)),
-            (&record.oxygen, floor(rule), ("mg/L".to_owned(), 1.0)),
-            (&record.oxygen_share, floor(rule), ("% of saturation".to_owned(), 100.0)),
+            (&record.temperature, asks(rule, system), Of::Range),
+            (&record.oxygen, floor(rule), Of::Oxygen),
+            (&record.oxygen_share, floor(rule), Of::Share),
         ];
-        for (held, asked, unit) in parts {
+        for (held, asked, of) in parts {
+            let by = |by: f64| of.by(rule, by, system);
+            let marked = if record.provisional { PROVISIONAL } else { REVIEWED };
             let Some(held) = held else { continue };
             let place = harmless(&rule.point);
             say(&mut out, &format!("{} at {place}: {asked}", harmless(&rule.name)), width, true);
-            say(&mut out, &format!("  {}; {PROVISIONAL}", tally(&held.all, &unit)), width, false);
+            say(&mut out, &format!("  {}; {marked}", tally(&held.all, &by)), width, false);
             if held.seasons.len() > 1 {
                 for (year, season) in &held.seasons {
-                    say(&mut out, &format!("  season of {year}: {}", tally(season, &unit)), width, false);
+                    say(&mut out, &format!("  season of {year}: {}", tally(season, &by)), width, false);
                 }
             }
             // where no day is outside a calendar tells nothing more
@@ -57,17 +81,8 @@ fn say(out: &mut Vec<(String, bool)>, text: &str, width: usize, strong: bool) {
     out.extend(wrapped_at(text, 4, width).lines().map(|line| (line.to_owned(), strong)));
 }
 
-/// The unit of a rule's values with what a value is multiplied by.
-fn unit(rule: &Target, system: System) -> (String, f64) {
-    if rule.statistic.counts_days() {
-        return ("days".to_owned(), 1.0);
-    }
-    let unit = system.unit(Dimension::TemperatureDifference);
-    (unit.symbol().to_owned(), unit.from_si(1.0))
-}
-
 /// `3 of 61 days above, by up to 0.8 C (2026-07-14), 2 in a row; 5 days without enough readings`
-fn tally(tally: &Tally, (unit, times): &(String, f64)) -> String {
+fn tally(tally: &Tally, amount: &dyn Fn(f64) -> String) -> String {
     let mut out = Vec::new();
     for (count, word) in [(tally.over, "above"), (tally.under, "below")] {
         if count > 0 {
@@ -78,7 +93,7 @@ fn tally(tally: &Tally, (unit, times): &(String, f64)) -> String {
         out.push(format!("none of {} outside", days(tally.judged)));
     }
     if let Some((by, on)) = tally.worst {
-        out.push(format!("by up to {:.1} {unit} ({on})", times * by));
+        out.push(format!("by up to {} ({on})", amount(by)));
         out.push(format!("at most {} in a row", tally.longest_run));
     }
     if tally.unknown > 0 {
@@ -88,7 +103,12 @@ fn tally(tally: &Tally, (unit, times): &(String, f64)) -> String {
 }
 
 fn days(count: u32) -> String {
-    if count == 1 { "1 day".to_owned() } else { format!("{count} days") }
+    days_of(f64::from(count))
+}
+
+/// `1 day`, `3 days`.
+pub(super) fn days_of(count: f64) -> String {
+    if (0.5..1.5).contains(&count) { "1 day".to_owned() } else { format!("{count:.0} days") }
 }
 
 /// A line a month: a sign for every day of it.

@@ -8,7 +8,7 @@ use crate::tasks::river::{RiverAnswer, Way, Which};
 use crate::units::{Dimension, System, figure, in_system};
 
 use super::super::mix::missed;
-use super::super::targets::{EXAMPLE, range, standing_words, value_words};
+use super::super::targets::{EXAMPLE, HELD_AS_WISH, range, standing_words, value_words};
 
 /// How one release stands against a rule.
 #[derive(Debug, Clone, PartialEq)]
@@ -34,7 +34,7 @@ pub struct RuleRow {
     pub point: String,
     /// What its range is of; empty where it sets none.
     pub statistic: String,
-    /// Statistic and range in words.
+    /// Statistic and range in words, and what the standing rests on.
     pub asks: String,
     /// Low, preferred, high and oxygen, each with its value in the unit shown.
     pub cells: [(&'static str, Option<String>); 4],
@@ -65,12 +65,13 @@ pub fn rules(context: &Context, answer: &RiverAnswer, system: System) -> Vec<Rul
                 missed: s.missed(),
             })
         };
+        let wish = if s.wish && !rule.soft { format!(", {HELD_AS_WISH}") } else { String::new() };
         Some(RuleRow {
             target: s.target,
             name: harmless(&rule.name),
             point: harmless(&rule.point),
             statistic: statistic(rule, system),
-            asks: asks(rule, system),
+            asks: format!("{}{wish}; {}", asks(rule, system), s.basis.words()),
             cells: cells(rule, system),
             standings: answer.ways.iter().filter_map(of).collect(),
             governs: s.governs,

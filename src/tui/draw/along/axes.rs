@@ -17,7 +17,7 @@ pub(super) const SIDE: usize = 6;
 /// Rows over it: the title.
 pub(super) const OVER: usize = 1;
 /// Rows under it: the axis, distances, names.
-const UNDER: usize = 3;
+pub(super) const UNDER: usize = 3;
 /// Least columns and rows of a plot.
 const LEAST: (usize, usize) = (16, 3);
 /// Least span of the scale, units shown: noise must not fill the picture.
@@ -27,6 +27,8 @@ const NEAR: f64 = 0.6;
 /// Cells a tick wants along and up.
 const TICK_COLS: usize = 10;
 const TICK_ROWS: usize = 2;
+/// Rows that hold no more than every second a tick.
+const FEW_ROWS: usize = 5;
 
 /// Where the plot lies, and its scales: distance in m, the value in the unit shown.
 pub(super) struct Frame {
@@ -51,12 +53,12 @@ impl Frame {
         let high = values.iter().copied().reduce(f64::max)?;
         let near = NEAR * (high - low).max(LEAST_SPAN);
         let windows = picture.points.iter().filter_map(|p| p.window);
-        let ends = picture.points.iter().map(|p| p.range).chain(windows);
+        let ends = picture.points.iter().map(|p| p.range).chain(windows).chain([picture.dam]);
         let bounds = ends.flat_map(|(a, b)| [a, b]).flatten().map(|v| picture.shown(v));
         let near: Vec<f64> = bounds.filter(|b| low - near <= *b && *b <= high + near).collect();
         let low = near.iter().copied().fold(low, f64::min);
         let high = near.iter().copied().fold(high, f64::max);
-        let y = Scale::round(low, high, LEAST_SPAN, ticks_in(rows, TICK_ROWS));
+        let y = Scale::round(low, high, LEAST_SPAN, ticks_up(rows));
         let x = Scale::new(0.0, picture.length_m.max(1.0))?;
         Some(Self { cols, rows, x, y, width })
     }
@@ -85,11 +87,12 @@ impl Frame {
         pen.put(0, 0, &title, Role::Strong);
         let mut legend: Vec<String> =
             picture.ways.iter().map(|w| format!("{} {}", w.letter, w.name)).collect();
-        if picture.points.iter().any(|p| p.range.0.is_some() || p.range.1.is_some()) {
+        let any = |ends: super::Ends| ends.0.is_some() || ends.1.is_some();
+        if any(picture.dam) || picture.points.iter().any(|p| any(p.range)) {
             legend.push(format!("{} asked", if ascii { '[' } else { '┃' }));
-            if picture.points.iter().any(|p| p.window.is_some()) {
-                legend.push(format!("{} release for it", if ascii { '(' } else { '┋' }));
-            }
+        }
+        if picture.points.iter().filter_map(|p| p.window).any(any) {
+            legend.push(format!("{} needed", if ascii { '(' } else { '┋' }));
         }
         if picture.ways.iter().any(|w| !w.bands.is_empty()) {
             legend.push(format!("{} 10-90 %", if ascii { 'I' } else { '│' }));
@@ -104,7 +107,7 @@ impl Frame {
     fn side(&self, pen: &mut Pen, ascii: bool) {
         let (line, tick) = if ascii { ("|", "+") } else { ("│", "┤") };
         (0..self.rows).for_each(|row| pen.put(SIDE - 1, OVER + row, line, Role::Quiet));
-        let marks = self.y.marks(ticks_in(self.rows, TICK_ROWS));
+        let marks = self.y.marks(ticks_up(self.rows));
         let decimals = usize::from(marks.decimals);
         for value in marks.values {
             let row = self.row(value);
@@ -185,6 +188,12 @@ impl Row {
             }
         }
     }
+}
+
+/// Ticks up the side: enough of them that a round scale is not much longer than what it holds.
+fn ticks_up(rows: usize) -> u32 {
+    let least = if rows > FEW_ROWS { 5 } else { 2 };
+    ticks_in(rows, TICK_ROWS).max(least)
 }
 
 fn ticks_in(cells: usize, each: usize) -> u32 {

@@ -11,18 +11,20 @@ use super::{AlongPicture, Ends};
 /// Ranges at the points and windows at the dam.
 pub(super) fn asked(picture: &AlongPicture, frame: &Frame, pen: &mut Pen, look: Look) {
     let ascii = look.symbols == Symbols::Ascii;
+    let bar = if ascii { "[" } else { "┃" };
+    bracket(picture, frame, pen, (SIDE, "d", Role::Range), picture.dam, bar);
     for (i, point) in picture.points.iter().enumerate() {
         let number = (i + 1).to_string();
         let role = if picture.chosen == Some(i) { Role::Chosen } else { Role::Range };
         let col = frame.col(point.at_m).min(SIDE + frame.cols - 1);
-        bracket(picture, frame, pen, (col, &number, role), point.range, if ascii { "[" } else { "┃" });
+        bracket(picture, frame, pen, (col, &number, role), point.range, bar);
         if let Some(window) = point.window {
             // windows of later points stand to the right of those of earlier ones
             bracket(
                 picture,
                 frame,
                 pen,
-                (SIDE + 2 * i, &number, role),
+                (SIDE + 2 * (i + 1), &number, role),
                 window,
                 if ascii { "(" } else { "┋" },
             );

@@ -63,6 +63,8 @@ pub struct AlongPicture {
     pub ways: Vec<AlongWay>,
     /// Points, from the dam down.
     pub points: Vec<AlongPoint>,
+    /// The range asked of the release at the dam.
+    pub dam: Ends,
     /// Streams that join: distance and name.
     pub joins: Vec<(f64, String)>,
     /// The point chosen.
@@ -74,7 +76,7 @@ pub struct AlongPicture {
 /// Draws the river along its length.
 ///
 /// ```text
-/// Temperature, C            N now  T tried  B best  [ asked, ( release for it
+/// Temperature, C                  N now  T tried  B best  [ asked  ( needed
 ///  20 |                                  [
 ///     |                           ..N....[.N
 ///  15 | (              [   .......       [
@@ -83,8 +85,8 @@ pub struct AlongPicture {
 ///     +-^------+-------^-----+-----------^---
 ///     dam     10     Mill Br 20       Lower Ford  km
 /// ```
-/// `[` stands beside the range asked at a point, `(` at the dam spans the release that would give it, each under the
-/// number of its point.
+/// `[` spans the range asked at a point, and at the dam (`d`); `(` beside the dam spans the release that a point needs,
+/// each under the number of its point.
 pub fn along(picture: &AlongPicture, area: Rect, buf: &mut Buffer, look: Look) {
     let mut pen = Pen::new(buf, area, look);
     let Some(frame) = axes::Frame::of(picture, area) else {
@@ -93,7 +95,10 @@ pub fn along(picture: &AlongPicture, area: Rect, buf: &mut Buffer, look: Look) {
     };
     frame.draw(picture, &mut pen, look);
     marks::asked(picture, &frame, &mut pen, look);
-    for way in &picture.ways {
+    // the thin one is what might be: it must not hide what is
+    let thin = |way: &&AlongWay| way.stroke == Stroke::Thin;
+    let above = picture.ways.iter().filter(|way| !thin(way));
+    for way in picture.ways.iter().filter(thin).chain(above) {
         let mut dots = Dots::new(look.symbols.grain(), frame.cols, frame.rows);
         let points: Vec<(f64, f64)> = way.places.iter().map(|p| (p.0, picture.shown(p.1))).collect();
         dots.curve(0, way.stroke, &points, &frame.x, &frame.y);
@@ -113,7 +118,7 @@ pub fn point_at(picture: &AlongPicture, area: Rect, col: u16, row: u16) -> Optio
     let frame = axes::Frame::of(picture, area)?;
     let col = usize::from(col.checked_sub(area.x)?);
     let row = usize::from(row.checked_sub(area.y)?);
-    if row >= axes::OVER + frame.rows + 2 {
+    if row >= axes::OVER + frame.rows + axes::UNDER {
         return None;
     }
     let far = |p: &AlongPoint| frame.col(p.at_m).abs_diff(col);

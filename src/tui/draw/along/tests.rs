@@ -24,6 +24,7 @@ fn picture() -> AlongPicture {
             point("Mill Bridge", 18_000.0, (Some(12.0), Some(16.0)), Some((Some(9.0), Some(13.0)))),
             point("Lower Ford", 30_000.0, (None, Some(18.0)), None),
         ],
+        dam: (Some(9.0), None),
         joins: vec![(8_000.0, "Tansy Creek".into())],
         chosen: Some(0),
         foot: true,
@@ -47,7 +48,8 @@ fn scenario_two_releases_on_their_way_past_two_points() {
     // the window stands at the dam under the number of its point, and so does the range at the point
     let axis = lines[11].rfind('^').unwrap();
     assert!(lines[1..11].iter().any(|l| l.chars().nth(axis) == Some('+')), "{lines:?}");
-    assert!(lines[1..11].iter().any(|l| l.chars().nth(axes::SIDE) == Some('(')), "{lines:?}");
+    assert!(lines[1..11].iter().any(|l| l.chars().nth(axes::SIDE + 2) == Some('(')), "{lines:?}");
+    assert!(lines[1..11].iter().any(|l| l.chars().nth(axes::SIDE) == Some('[')), "{lines:?}");
     // each line ends in its letter, the warmer one above
     let row = |c: char| lines[1..11].iter().position(|l| l.ends_with(c)).unwrap();
     assert!(row('T') < row('N'), "{lines:?}");

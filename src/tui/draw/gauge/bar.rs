@@ -51,6 +51,11 @@ impl Gauge {
 }
 
 impl Held {
+    /// What arrives at its point, SI; `None` at the dam, where the rows of the releases tell it.
+    fn arrives(&self) -> Option<f64> {
+        self.value.filter(|_| self.point.is_some())
+    }
+
     /// Ends of the range that the buffer leaves.
     fn kept(&self) -> [Option<f64>; 2] {
         [self.low.map(|v| v + self.buffer), self.high.map(|v| v - self.buffer)]
@@ -61,7 +66,8 @@ impl Axis {
     /// The axis over ranges, values, bands and, where that does not press the rest together, what is attainable.
     /// `None` where there is no value at all or no cell.
     pub(super) fn of(gauge: &Gauge, cells: usize) -> Option<Self> {
-        let held = gauge.targets.iter().flat_map(|h| [h.low, h.high, h.preferred]).flatten();
+        let ends = |h: &Held| [h.low, h.high, h.preferred, h.arrives()];
+        let held = gauge.targets.iter().flat_map(ends).flatten();
         let read = [Some(gauge.tried), gauge.now].into_iter().flatten();
         let read = read.flat_map(|r| r.value.into_iter().chain(r.band.into_iter().flatten()));
         let unit = gauge.unit();
@@ -118,6 +124,9 @@ impl Axis {
                 if let Some(preferred) = held.preferred {
                     put(cell(preferred), "P", Role::Range);
                 }
+                if let Some(arrives) = held.arrives() {
+                    put(cell(arrives), "o", Role::Tried);
+                }
             }
             Bar::Reading(reading, role) => {
                 if let Some(band) = reading.band {
@@ -151,8 +160,9 @@ impl Axis {
         if matches!(bar, Bar::Range(_)) {
             return;
         }
-        // the bounds of the governing range run down through the other rows
-        for end in gauge.targets.first().map(Held::kept).into_iter().flatten().flatten() {
+        // the bounds of the governing range run down through the other rows; those of a point say nothing of a release
+        let at_dam = gauge.targets.iter().find(|held| held.point.is_none());
+        for end in at_dam.map(Held::kept).into_iter().flatten().flatten() {
             pen.fill(x + cell(end), row, if ascii { ":" } else { "┊" }, Role::Range);
         }
     }

@@ -3,7 +3,7 @@
 use crate::mix::{Mix, Spread, TargetStanding};
 use crate::problem::harmless;
 use crate::site::Site;
-use crate::target::{Basis, DAM, Target};
+use crate::target::{Basis, DAM, Standing, Target};
 use crate::tasks::rank::Shown;
 use crate::units::{Dimension, System, in_system};
 
@@ -50,7 +50,8 @@ impl Release<'_> {
     fn held(self, site: &Site, of: impl Fn(&TargetStanding, &Target) -> Option<Held>) -> Vec<Held> {
         let mut held: Vec<Held> =
             self.targets.iter().filter_map(|s| of(s, site.targets.get(s.target)?)).collect();
-        held.sort_by_key(|h| !h.governs);
+        let missed = |h: &Held| matches!(h.standing, Standing::Above | Standing::Below);
+        held.sort_by_key(|h| (!h.governs, !missed(h), h.point.is_some()));
         held
     }
 }
@@ -63,7 +64,12 @@ fn no_target(release: Release, of_kind: &'static str) -> &'static str {
 /// The name of a rule, with its point where that is not the dam.
 fn placed(rule: &Target) -> String {
     let name = harmless(&rule.name);
-    if rule.point == DAM { name } else { format!("{name} at {}", harmless(&rule.point)) }
+    point(rule).map_or_else(|| name.clone(), |point| format!("{name} at {point}"))
+}
+
+/// The point of a rule; `None` at the dam.
+fn point(rule: &Target) -> Option<String> {
+    (rule.point != DAM).then(|| harmless(&rule.point))
 }
 
 impl Gauge {
@@ -82,6 +88,7 @@ impl Gauge {
             let [low, high] = s.left_c;
             rule.has_range().then(|| Held {
                 name: placed(rule),
+                point: point(rule),
                 low: if plain { rule.low_c } else { low },
                 high: if plain { rule.high_c } else { high },
                 preferred: rule.preferred_c.filter(|_| rule.is_of_temperature()),
@@ -121,6 +128,7 @@ impl Gauge {
         let held = |s: &TargetStanding, rule: &Target| {
             rule.oxygen_min_mg_l.or(s.floor_mg_l).map(|least| Held {
                 name: placed(rule),
+                point: point(rule),
                 low: Some(least),
                 high: None,
                 preferred: None,

@@ -19,7 +19,7 @@ use super::{Attainable, Gauge, Held, Reading};
 const BAR_BESIDE: usize = 20;
 const BAR_SHORT: usize = 8;
 /// From this worth on a line is detail, for which nothing else is left out.
-const DETAIL: u8 = 9;
+const DETAIL: u8 = 11;
 
 struct Line {
     /// 0 stays longest.
@@ -123,7 +123,9 @@ impl Row {
     fn said(&self, gauge: &Gauge, columns: Columns, named: bool) -> (String, String) {
         let [full, short] = &self.label;
         let label = match self.bar {
-            Bar::Range(i) if !named => gauge.targets.get(i).map_or(full, |held| &held.name),
+            Bar::Range(i) if !named => {
+                gauge.targets.get(i).map_or(full, |held| held.point.as_ref().unwrap_or(&held.name))
+            }
             _ if columns.label < full.width() && !columns.stacked => short,
             _ => full,
         };
@@ -178,12 +180,21 @@ fn lines(gauge: &Gauge, width: usize) -> Vec<Line> {
     }
     for (i, held) in gauge.targets.iter().enumerate() {
         let first = i == 0;
+        // what stands now is told before a rule down the river that is kept
+        let missed = matches!(held.standing, Standing::Above | Standing::Below);
+        let spare = if held.point.is_some() && !missed { 9 } else { 5 };
         for (n, words) in wrapped(&gauge.pieces(held), width).into_iter().enumerate() {
-            let worth = if n > 0 { DETAIL } else { [6, 2][usize::from(first)] };
+            let worth = if n > 0 {
+                DETAIL
+            } else if first {
+                2
+            } else {
+                spare + 1
+            };
             let role = if n == 0 { Role::Range } else { Role::Quiet };
             out.push(Line { worth, kind: Kind::Words(words, role) });
         }
-        out.push(Line { worth: [5, 0][usize::from(first)], kind: Kind::Bar(gauge.range(i, held)) });
+        out.push(Line { worth: if first { 0 } else { spare }, kind: Kind::Bar(gauge.range(i, held)) });
     }
     out.push(Line { worth: 1, kind: Kind::Bar(gauge.reading("tried", gauge.tried, Role::Tried)) });
     if let Some(now) = gauge.now {
@@ -236,7 +247,9 @@ impl Gauge {
         let mut out = vec![held.name.clone()];
         out.extend(held.governs.then(|| "governs".to_owned()));
         let apart = |v: &f64| self.tried.value.is_some_and(|t| self.figure(t) != self.figure(*v));
-        out.extend(held.value.filter(apart).map(|v| format!("{} {}", held.statistic, with_unit(v))));
+        let (there, elsewhere) = (if held.point.is_some() { " there" } else { "" }, held.point.is_some());
+        let told = held.value.filter(|v| elsewhere || apart(v));
+        out.extend(told.map(|v| format!("{}{there} {}", held.statistic, with_unit(v))));
         let percent = |share: f64| format!("{:.0} %", 100.0 * share);
         out.extend(held.share.map(|s| format!("{} of cases inside", percent(s))));
         out.extend(held.share_both.map(|s| format!("{} in oxygen too", percent(s))));
@@ -255,7 +268,11 @@ impl Gauge {
     }
 
     fn range(&self, index: usize, held: &Held) -> Row {
-        let label = if held.high.is_none() { ["at least", "least"] } else { ["range", "range"] };
+        let label = match (&held.point, held.high) {
+            (Some(_), _) => ["there", "there"],
+            (None, None) => ["at least", "least"],
+            (None, Some(_)) => ["range", "range"],
+        };
         let (words, words_role) = match (held.standing, held.by) {
             (Standing::Unknown, _) => (["UNKNOWN".to_owned(), "UNKNOWN".to_owned()], Role::Warn),
             (standing, Some(by)) if by > 0.0 => {

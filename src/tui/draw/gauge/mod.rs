@@ -30,8 +30,10 @@ pub struct Reading {
 /// A rule and how the release tried stands against it.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Held {
-    /// Name of the target.
+    /// Name of the target, with its point where it has one.
     pub name: String,
+    /// The point down the river where it applies: what arrives there is held against it, not the release.
+    pub point: Option<String>,
     /// Lower end of the range, SI; `None` where the range is open.
     pub low: Option<f64>,
     /// Upper end, SI.
@@ -112,6 +114,8 @@ const BETWEEN: u16 = 2;
 /// attainable :    <--------------> 50.6 to 58.6 F
 ///            48      52      56      60
 /// ```
+/// A rule of a point down the river has what arrives there as `o` on its own row, which is headed `there`.
+///
 /// Where it is narrow the words stand over the bars if there are rows for it, else they are shortened; where it is low
 /// details, the axis, what is attainable and now are left out in that order, never the standing and the value tried.
 pub fn gauge(gauge: &Gauge, area: Rect, buf: &mut Buffer, look: Look) {

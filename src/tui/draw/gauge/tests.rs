@@ -28,6 +28,7 @@ fn lines(buf: &Buffer) -> Vec<String> {
 fn warm() -> Gauge {
     let held = Held {
         name: "summer".into(),
+        point: None,
         low: Some(80.0 / 9.0),
         high: Some(120.0 / 9.0),
         preferred: Some(100.0 / 9.0),
@@ -279,4 +280,31 @@ fn scenario_two_gauges_beside_and_above_one_another() {
         assert!(lines.iter().any(|l| l.contains("54.5 F (53.4 to 55.8)")), "{lines:?}");
         assert!(!lines[usize::from(height) - 1].is_empty(), "{lines:?}");
     }
+}
+
+#[test]
+fn scenario_a_rule_down_the_river_is_held_against_what_arrives_there() {
+    let mut g = warm();
+    let mut there = g.targets[0].clone();
+    (there.name, there.point) = ("rearing at Mill Bridge".into(), Some("Mill Bridge".into()));
+    (there.low, there.high, there.preferred, there.value) = (None, Some(17.0), None, Some(15.0));
+    (there.share, there.share_both, there.governs) = (None, None, true);
+    g.targets.insert(0, there);
+    let shown = drawn(&g, 58, 11, Symbols::Ascii);
+    assert_eq!(shown[1], "rearing at Mill Bridge, governs, daily mean there 59.0 F");
+    assert_eq!(shown[2], "at most 62.6 F");
+    let range = &shown[3];
+    assert!(
+        range.starts_with("there      <===") && range.contains('o') && range.ends_with("inside"),
+        "{range}"
+    );
+    // the bounds that run down past the releases are those of the rule at the dam
+    let at = |line: &str, c: char| line.find(c).unwrap();
+    let tried = shown.iter().find(|l| l.starts_with("tried")).unwrap();
+    let at_dam = shown.iter().find(|l| l.starts_with("range")).unwrap();
+    assert_eq!(at(tried, ':'), at(at_dam, '['), "{shown:?}");
+    assert!(at(range, 'o') > at(tried, 'o') && !tried[at(range, ']')..].starts_with(':'), "{shown:?}");
+    // where no line is left for its name, its point heads it
+    let low = drawn(&g, 40, 2, Symbols::Ascii);
+    assert!(low.iter().any(|l| l.starts_with("Mill")), "{low:?}");
 }

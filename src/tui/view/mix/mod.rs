@@ -42,8 +42,9 @@ struct Parts {
 
 fn parts(model: &Model, session: &Session, area: Rect) -> Parts {
     let wanted = gauge_pair(model, session).map_or(6, |g| gauges_rows([&g[0], &g[1]], area.width));
-    // low screens keep two thirds for the board: the gauges say less in fewer rows, the board would only scroll
-    let most = if area.height < 24 { area.height / 3 } else { area.height / 2 };
+    // low screens keep two thirds for the board: the gauges say less in fewer rows, the board would only scroll;
+    // so do high ones where many rules hold
+    let most = if area.height < 24 { area.height / 3 } else { area.height * 2 / 5 };
     let below = wanted.min(area.height.saturating_sub(LEAST_ABOVE)).min(most);
     let above = area.height - below;
     let board_width = (area.width / 2).max(46).min(area.width);

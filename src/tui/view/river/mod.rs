@@ -43,6 +43,23 @@ struct Screen<'a> {
     old: bool,
 }
 
+impl Screen<'_> {
+    /// Whether anything is known of the way down.
+    fn has_course(&self) -> bool {
+        self.down.answer.ways.iter().any(|w| w.course.is_some())
+    }
+
+    /// That an answer is of before, and whether another is on its way.
+    fn old_words(&self) -> Option<&'static str> {
+        let waits = self.model.quick.is_some() || self.model.long.is_some() || self.model.down.is_some();
+        self.old.then_some(if waits {
+            "FROM BEFORE; the new is being computed"
+        } else {
+            "FROM BEFORE; no answer to the last change"
+        })
+    }
+}
+
 /// Where the parts lie.
 struct Parts {
     warmth: Rect,
@@ -60,7 +77,10 @@ fn parts(screen: &Screen, area: Rect) -> Parts {
     let right = PLACES.max(area.width / 5 * 2).min(area.width / 2);
     let left = area.width - right - 1;
     let above = (area.height * 3 / 5).min(area.height.saturating_sub(BELOW));
-    let has_course = screen.down.answer.ways.iter().any(|w| w.course.is_some());
+    let has_course = screen.has_course();
+    // without a picture no more rows than the words take
+    let said = points::lines(screen, usize::from(right), usize::from(above)).len();
+    let above = if has_course { above } else { above.min(u16::try_from(said + 1).unwrap_or(above)) };
     let both = has_course && above >= 2 * PICTURE;
     let warmth = if both { above * 3 / 5 } else { above };
     Parts {
@@ -79,8 +99,10 @@ pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffe
     };
     let parts = parts(&screen, area);
     let [warmth, oxygen] = picture::pictures(&screen, parts.oxygen.height == 0);
-    if parts.warmth.height > 0 {
+    if parts.warmth.height > 0 && screen.has_course() {
         along(&warmth, parts.warmth, buf, model.look);
+    } else {
+        write(&no_course(&screen, usize::from(parts.warmth.width)), parts.warmth, 0, model, buf);
     }
     if parts.oxygen.height > 0 {
         along(&oxygen, parts.oxygen, buf, model.look);
@@ -88,11 +110,11 @@ pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffe
     let lines = points::lines(&screen, usize::from(parts.places.width), usize::from(parts.places.height));
     write(&lines, parts.places, 0, model, buf);
     let (lines, last) = scrolled(&screen, parts.below);
-    let from = from(&screen, last, parts.below);
+    let from = session.river.scroll.min(last);
     let rows = if last > 0 { parts.below.height.saturating_sub(1) } else { parts.below.height };
     write(&lines, Rect { height: rows, ..parts.below }, from, model, buf);
     if session.river.page == RiverPage::Rules {
-        rules::mark(&screen, Rect { height: rows, ..parts.below }, from, buf);
+        rules::mark(&screen, (parts.below, Rect { height: rows, ..parts.below }), from, buf);
     }
     if last > 0 {
         let below = last - from;
@@ -105,15 +127,17 @@ pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffe
 pub(super) fn hit(model: &Model, session: &Session, area: Rect, at: Position) -> Option<usize> {
     let screen = screen(model, session)?;
     let parts = parts(&screen, area);
-    if parts.warmth.contains(at) {
-        let [warmth, _] = picture::pictures(&screen, parts.oxygen.height == 0);
-        let point = point_at(&warmth, parts.warmth, at.x, at.y)?;
-        return rules::first_at(&screen, point);
+    let pictures = picture::pictures(&screen, parts.oxygen.height == 0);
+    for (picture, place) in pictures.iter().zip([parts.warmth, parts.oxygen]) {
+        if place.contains(at) && screen.has_course() {
+            let point = point_at(picture, place, at.x, at.y)?;
+            return rules::first_at(&screen, point);
+        }
     }
     if parts.below.contains(at) && session.river.page == RiverPage::Rules {
         let (_, last) = scrolled(&screen, parts.below);
-        let line = usize::from(at.y - parts.below.y) + from(&screen, last, parts.below);
-        return rules::at_line(&screen, usize::from(parts.below.width), line);
+        let line = usize::from(at.y - parts.below.y) + session.river.scroll.min(last);
+        return rules::at_line(&screen, parts.below, line);
     }
     None
 }
@@ -136,6 +160,16 @@ fn screen<'a>(model: &'a Model, session: &'a Session) -> Option<Screen<'a>> {
     Some(Screen { model, session, down, old: !session.flows_now() })
 }
 
+/// Why there is no picture.
+fn no_course(screen: &Screen, width: usize) -> Lines {
+    let mut out = Lines::new();
+    say(&mut out, "No picture: what arrives is not known.", width, 2, Role::Strong);
+    for note in screen.down.answer.notes.iter().filter(|n| n.kind.starts_with("no-")) {
+        say(&mut out, &note.advice(screen.model.system()), width, 2, Role::Warn);
+    }
+    out
+}
+
 /// Why there is nothing to show.
 fn without(model: &Model, session: &Session, width: usize) -> Lines {
     let failure = session.river_wrong.as_ref().or(session.wrong.as_ref());
@@ -147,22 +181,27 @@ fn without(model: &Model, session: &Session, width: usize) -> Lines {
     wrapped(&words, width, 2).into_iter().map(|line| (line, Role::Plain)).collect()
 }
 
-/// First line shown of the page below: as scrolled, and so that the rule chosen is in sight.
-fn from(screen: &Screen, last: usize, area: Rect) -> usize {
-    let scrolled = screen.session.river.scroll.min(last);
-    if screen.session.river.page != RiverPage::Rules || last == 0 {
-        return scrolled;
+/// First line of the page below with which the rule chosen is in sight, the nearest to the one shown.
+pub(super) fn in_sight(model: &Model, session: &Session, area: Rect) -> usize {
+    let Some(screen) = screen(model, session) else { return 0 };
+    let area = parts(&screen, area).below;
+    let (_, last) = scrolled(&screen, area);
+    let from = session.river.scroll.min(last);
+    if session.river.page != RiverPage::Rules {
+        return from;
     }
     let rows = usize::from(area.height.saturating_sub(1));
-    let (first, end) = rules::lines_of_chosen(screen, usize::from(area.width));
-    scrolled.max(end.saturating_sub(rows)).min(first).min(last)
+    let (first, end) = rules::lines_of_chosen(&screen, area);
+    // with the first rule the lines before it come back
+    let first = if session.river.rule == 0 && end <= rows { 0 } else { first };
+    from.max(end.saturating_sub(rows)).min(first).min(last)
 }
 
 /// What scrolls, and how far it can be.
 fn scrolled(screen: &Screen, area: Rect) -> (Lines, usize) {
     let width = usize::from(area.width);
     let lines = match screen.session.river.page {
-        RiverPage::Rules => rules::lines(screen, width),
+        RiverPage::Rules => rules::lines(screen, area),
         RiverPage::Days => days::lines(screen, width),
         RiverPage::Record => record::lines(screen, width),
     };

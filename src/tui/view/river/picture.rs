@@ -5,11 +5,14 @@ use crate::problem::harmless;
 use crate::river::{Figures, Place};
 use crate::target::{DAM, Target};
 use crate::tasks::river::{Way, Which};
-use crate::tui::draw::along::{AlongPicture, AlongPoint, AlongWay};
+use crate::tui::draw::along::{AlongPicture, AlongPoint, AlongWay, Ends};
 use crate::tui::look::Role;
 use crate::units::Dimension;
 
 use super::Screen;
+
+/// Oxygen below which the figure shown would be zero, mg/L (choice).
+const LEAST_MG_L: f64 = 0.05;
 
 /// Temperature and oxygen; names stand below the temperature where it is alone.
 pub(super) fn pictures(screen: &Screen, alone: bool) -> [AlongPicture; 2] {
@@ -29,6 +32,7 @@ pub(super) fn pictures(screen: &Screen, alone: bool) -> [AlongPicture; 2] {
         length_m,
         ways: ways(screen, dimension),
         points: points(screen, dimension),
+        dam: dam(screen, dimension),
         joins: joins.clone(),
         chosen: chosen(screen),
         foot,
@@ -82,6 +86,15 @@ fn stroke(which: Which) -> Stroke {
     }
 }
 
+/// What is asked of the release at the dam itself.
+fn dam(screen: &Screen, dimension: Dimension) -> Ends {
+    let window = screen.down.answer.windows.iter().find(|w| w.point.is_none());
+    window.map_or((None, None), |w| match dimension {
+        Dimension::Temperature => (w.asked_c[0], w.asked_c[1]),
+        _ => (w.floor_mg_l, None),
+    })
+}
+
 fn points(screen: &Screen, dimension: Dimension) -> Vec<AlongPoint> {
     let Some(river) = &screen.down.context.site().river else { return Vec::new() };
     let windows = &screen.down.answer.windows;
@@ -90,9 +103,13 @@ fn points(screen: &Screen, dimension: Dimension) -> Vec<AlongPoint> {
         let (range, needed) = match (window, dimension) {
             (None, _) => ((None, None), None),
             (Some(w), Dimension::Temperature) => {
-                ((w.asked_c[0], w.asked_c[1]), w.reachable.then_some((w.low_c, w.high_c)))
+                ((w.asked_c[0], w.asked_c[1]), (w.reachable == Some(true)).then_some((w.low_c, w.high_c)))
             }
-            (Some(w), _) => ((w.floor_mg_l, None), w.oxygen_min_mg_l.map(|least| (Some(least), None))),
+            // a floor that any release keeps asks nothing of it
+            (Some(w), _) => {
+                let least = w.oxygen_min_mg_l.filter(|least| *least >= LEAST_MG_L);
+                ((w.floor_mg_l, None), least.map(|least| (Some(least), None)))
+            }
         };
         AlongPoint { name: harmless(&p.name), at_m: p.at_m, range, window: needed }
     };

@@ -6,6 +6,7 @@ use ratatui::layout::Rect;
 use crate::problem::harmless;
 use crate::report::text::river::{self, RuleRow};
 use crate::target::Target;
+use crate::tasks::river::Timely;
 use crate::tui::look::Role;
 use crate::tui::model::Row;
 use crate::tui::update::rules;
@@ -14,8 +15,12 @@ use super::super::write::{cut, row_style};
 use super::picture::{at, mark as letter};
 use super::{Lines, Screen, say};
 
+/// Rows from which every rule has its words, not the one chosen alone (choice).
+const TALL: u16 = 14;
+
 /// The lines, each with the rule it is of.
-fn told(screen: &Screen, width: usize) -> Vec<(Option<usize>, String, Role)> {
+fn told(screen: &Screen, area: Rect) -> Vec<(Option<usize>, String, Role)> {
+    let (width, brief) = (usize::from(area.width), area.height < TALL);
     let (context, answer, system) = (&screen.down.context, &screen.down.answer, screen.model.system());
     let mut out: Vec<(Option<usize>, String, Role)> = Vec::new();
     let mut add = |rule: Option<usize>, text: &str, indent: usize, role: Role| {
@@ -23,29 +28,43 @@ fn told(screen: &Screen, width: usize) -> Vec<(Option<usize>, String, Role)> {
         say(&mut lines, text, width, indent, role);
         out.extend(lines.into_iter().map(|(line, role)| (rule, line, role)));
     };
-    add(None, "Rules today; Enter types over the value in brackets, d days, v record", 2, Role::Quiet);
     let rows = river::rules(context, answer, system);
+    let which =
+        rows.iter().find(|r| r.governs).map_or_else(String::new, |r| format!("; `{}` governs", r.name));
+    let head = format!("Rules today; Enter types over [ ]{which}");
+    add(None, &head, 2, Role::Quiet);
+    for words in soon(screen) {
+        add(None, &words, 2, Role::Warn);
+    }
     if rows.is_empty() {
         add(None, "No rule is valid on this date.", 2, Role::Strong);
     }
-    for (i, row) in rows.iter().enumerate() {
-        let chosen = screen.session.river.rule == i;
+    let listed = rules(screen.session);
+    for row in &rows {
+        // an answer of before may tell of other rules than those there are now
+        let at = listed.iter().position(|r| *r == Row::Target(row.target));
+        let chosen = at == Some(screen.session.river.rule);
         let mark = if chosen { ">" } else { " " };
-        let governs = if row.governs { "; governs" } else { "" };
+        let governs = if row.governs { " (governs)" } else { "" };
         let stands = row.standings.iter().map(|s| format!("{} {}", letter(s.of).0, s.short));
         let head = format!(
-            "{mark} {} at {}: {}{governs}",
+            "{mark} {} at {}{governs}: {}",
             row.name,
             row.point,
             stands.collect::<Vec<_>>().join("; ")
         );
         let missed = row.standings.iter().any(|s| s.missed);
         // the row chosen is reversed, and reversed colours would part it
-        add(Some(i), &head, 4, if missed && !chosen { Role::Outside } else { Role::Strong });
-        add(Some(i), &format!("    {} {}", typed(screen, i, row), row.source), 6, Role::Quiet);
+        add(at, &head, 4, if missed && !chosen { Role::Outside } else { Role::Strong });
+        if chosen || !brief {
+            add(at, &format!("    {} {}", typed(screen, chosen, row), row.source), 6, Role::Quiet);
+        }
         for standing in row.standings.iter().filter(|_| chosen) {
             let role = if standing.missed { Role::Outside } else { Role::Plain };
-            add(Some(i), &format!("    {}", standing.words), 6, role);
+            add(at, &format!("    {}", standing.words), 6, role);
+        }
+        for words in needed(screen, row.target).filter(|_| chosen) {
+            add(at, &format!("    {words}"), 6, Role::Range);
         }
     }
     for words in river::conflicts(context, answer, system) {
@@ -54,14 +73,48 @@ fn told(screen: &Screen, width: usize) -> Vec<(Option<usize>, String, Role)> {
     for note in &answer.notes {
         add(None, &format!("! {}", note.advice(system)), 2, Role::Warn);
     }
+    let points = context.site().river.as_ref().map_or(0, |r| r.points.len());
+    for (i, words) in (0..points).filter_map(|i| Some((i, river::stage_words(context, answer, i, system)?))) {
+        add(None, &format!("- {} {}: {words}", i + 1, point_name(screen, i)), 2, Role::Plain);
+    }
     out.push((None, String::new(), Role::Plain));
-    out.extend(super::days::strip(screen).into_iter().map(|(line, role)| (None, line, role)));
+    out.extend(super::days::strip(screen, width).into_iter().map(|(line, role)| (None, line, role)));
     out
 }
 
+/// That a day ahead would be too warm, and when a change for it must leave: in short, the whole is beside the picture
+/// where it has room and on the page of the days.
+fn soon(screen: &Screen) -> Vec<String> {
+    let (context, answer) = (&screen.down.context, &screen.down.answer);
+    let words = |t: &Timely| {
+        let rule = context.site().targets.get(t.target)?;
+        let (day, leave) = (t.day.format("%m-%d"), t.leave_by.format("%m-%d %H:%M"));
+        let late = if t.late { ", which is past" } else { "" };
+        let place = point_name(screen, t.point);
+        let name = harmless(&rule.name);
+        Some(format!("! {place}: `{name}` missed from {day} if held; change by {leave}{late}; d tells more"))
+    };
+    answer.timely.iter().filter_map(words).collect()
+}
+
+/// The release that the place of a rule needs for all its rules, and which set the ends.
+fn needed(screen: &Screen, target: usize) -> impl Iterator<Item = String> {
+    let site = screen.down.context.site();
+    let rule = site.targets.get(target).filter(|rule| !rule.soft);
+    let window = rule.and_then(|rule| {
+        let place = at(screen, rule);
+        screen.down.answer.windows.iter().find(|w| w.point == place)
+    });
+    let words = window.zip(rule).map(|(window, rule)| {
+        let words = river::window_words(window, screen.model.system());
+        format!("release needed for all rules at {}: {words}", harmless(&rule.point))
+    });
+    words.into_iter()
+}
+
 /// What a rule asks, the cell chosen in brackets.
-fn typed(screen: &Screen, at: usize, row: &RuleRow) -> String {
-    if screen.session.river.rule != at {
+fn typed(screen: &Screen, chosen: bool, row: &RuleRow) -> String {
+    if !chosen {
         return row.asks.clone();
     }
     let cells = row.cells.iter().enumerate().map(|(i, (name, value))| {
@@ -73,29 +126,29 @@ fn typed(screen: &Screen, at: usize, row: &RuleRow) -> String {
     format!("{statistic}{}{example}", cells.collect::<Vec<_>>().join(" "))
 }
 
-pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
-    told(screen, width).into_iter().map(|(_, line, role)| (line, role)).collect()
+pub(super) fn lines(screen: &Screen, area: Rect) -> Lines {
+    told(screen, area).into_iter().map(|(_, line, role)| (line, role)).collect()
 }
 
 /// First and last line of the rule chosen.
-pub(super) fn lines_of_chosen(screen: &Screen, width: usize) -> (usize, usize) {
-    let told = told(screen, width);
+pub(super) fn lines_of_chosen(screen: &Screen, area: Rect) -> (usize, usize) {
+    let told = told(screen, area);
     let of = |line: &(Option<usize>, String, Role)| line.0 == Some(screen.session.river.rule);
     let first = told.iter().position(of).unwrap_or(0);
     (first, told.iter().rposition(of).map_or(0, |i| i + 1))
 }
 
 /// Marks the first line of the rule chosen.
-pub(super) fn mark(screen: &Screen, area: Rect, from: usize, buf: &mut Buffer) {
-    let (first, _) = lines_of_chosen(screen, usize::from(area.width));
+pub(super) fn mark(screen: &Screen, (whole, area): (Rect, Rect), from: usize, buf: &mut Buffer) {
+    let (first, _) = lines_of_chosen(screen, whole);
     if let Some(row) = first.checked_sub(from).and_then(|r| u16::try_from(r).ok()) {
         row_style(buf, area, row, screen.model.look.style(Role::Chosen));
     }
 }
 
 /// The rule a line is of.
-pub(super) fn at_line(screen: &Screen, width: usize, line: usize) -> Option<usize> {
-    told(screen, width).get(line)?.0
+pub(super) fn at_line(screen: &Screen, area: Rect, line: usize) -> Option<usize> {
+    told(screen, area).get(line)?.0
 }
 
 /// The rule chosen.
