@@ -1,7 +1,8 @@
 //! When water and its rise come to a point.
 
 use approx::assert_abs_diff_eq;
-use gatemix::river::{Conditions, course};
+use chrono::{DateTime, FixedOffset};
+use gatemix::river::{Conditions, course, latest};
 use proptest::prelude::*;
 
 use crate::columns::config;
@@ -39,5 +40,15 @@ proptest! {
             assert_abs_diff_eq!(from, least[i].figures.flow_m3s, epsilon = 1e-9);
             assert_abs_diff_eq!(to, most[i].figures.flow_m3s, epsilon = 1e-9);
         }
+    }
+
+    #[test]
+    fn law_water_that_leaves_at_the_latest_moment_comes_in_time(flow in 5.0..80.0_f64, point in 0..2_usize) {
+        let site = long(GIVEN);
+        let by: DateTime<FixedOffset> = "2026-07-16T15:00:00+00:00".parse().unwrap();
+        let leaves = latest(&site, &Conditions::default(), flow, point, by).unwrap();
+        let course = course(&site, &Conditions::default(), day(), &[part(24.0, flow, 9.0, 8.0)]).unwrap();
+        let hours = (by - leaves).num_milliseconds() as f64 / 3.6e6;
+        prop_assert!((hours - course.points[point].travel_h).abs() < 1e-5);
     }
 }
