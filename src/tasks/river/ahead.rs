@@ -116,7 +116,7 @@ fn first(context: &Context, (now, way): (&Way, &Way), point: usize) -> Option<Ti
         days: run.days,
         worst: run.worst,
         // of that day: streams that join make the water faster or slower
-        travel_h: (begins - leave_by).as_seconds_f64() / SECONDS_H,
+        travel_h: (begins - leave_by).as_seconds_f64() / HOUR_S,
         leave_by,
         late: leave_by < context.on,
         rise_first_h: there.rise_first_h,
@@ -208,7 +208,7 @@ fn dates_of(days: &Days) -> impl Iterator<Item = NaiveDate> + '_ {
 }
 
 /// Seconds of an hour.
-const SECONDS_H: f64 = 3600.0;
+const HOUR_S: f64 = 3600.0;
 /// Milliseconds of an hour.
 const HOUR_MS: f64 = 3_600_000.0;
 /// The longest way looked at, hours (choice): a year.
