@@ -141,7 +141,7 @@ impl<'a> Ahead<'a> {
             days: run.days,
             worst: run.worst,
             // of that day: streams that join make the water faster or slower
-            travel_h: (begins - leave_by).as_seconds_f64() / SECONDS_H,
+            travel_h: (begins - leave_by).as_seconds_f64() / HOUR_S,
             leave_by,
             late: leave_by < self.context.on,
             rise_first_h: there.rise_first_h,
@@ -185,7 +185,7 @@ fn arrives(
     })
 }
 
-/// Hours of a day.
+/// Hours of a day (standard).
 const HOURS: u32 = 24;
 
 /// Days in a row above a rule.
@@ -235,9 +235,9 @@ fn dates_of(days: &Days) -> impl Iterator<Item = NaiveDate> + '_ {
     days.days.keys().copied()
 }
 
-/// Seconds of an hour.
-const SECONDS_H: f64 = 3600.0;
-/// Milliseconds of an hour.
+/// Seconds of an hour (standard).
+const HOUR_S: f64 = 3600.0;
+/// Milliseconds of an hour (standard).
 const HOUR_MS: f64 = 3_600_000.0;
 /// The longest way looked at, hours (choice): a year.
 const LONGEST_H: f64 = 365.0 * 24.0;
