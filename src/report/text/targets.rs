@@ -40,7 +40,7 @@ pub fn range(rule: &Target, system: System) -> String {
     }
     match &rule.reference {
         Some(Reference::Natural) => {
-            parts.push("from the natural temperature (the balance with the air that day)".to_owned())
+            parts.push("from the natural temperature (the balance with the air that day)".to_owned());
         }
         Some(Reference::Stream(name)) => parts.push(format!("from the temperature of {}", harmless(name))),
         None => {}

@@ -196,13 +196,18 @@ pub fn stage_words(context: &Context, answer: &RiverAnswer, point: usize, system
     if point_at.rating.is_empty() {
         return Some("stage rise not computed: no rating given".to_owned());
     }
+    // of a day in blocks the greatest flow: that is what floods
     let flow = |which: Which| {
         let way = answer.ways.iter().find(|w| w.which == which)?;
-        Some(way.course.as_ref()?.points.get(point)?.figures.flow_m3s)
+        let there = way.course.as_ref()?.points.iter().find(|p| p.point == point)?;
+        Some(there.flow_range_m3s.1)
     };
-    let now = point_at.stage_m(flow(Which::Now)?)?;
+    let now_m3s = flow(Which::Now)?;
     let words = [Which::Tried, Which::Best].into_iter().filter_map(|which| {
-        let stage = point_at.stage_m(flow(which)?)?;
+        let stages = point_at.stage_m(now_m3s).zip(point_at.stage_m(flow(which)?));
+        let Some((now, stage)) = stages else {
+            return Some(format!("stage of {} not computed: a flow lies outside the rating", which.word()));
+        };
         let by = stage - now;
         if by.abs() < SAME_STAGE_M {
             return Some(format!("{} leaves the stage as it is now", which.word()));
