@@ -47,7 +47,10 @@ impl Conflict {
         let cure = if priority(0) == priority(1) {
             "ask who set them which one comes first, and give `priority`".to_owned()
         } else {
-            format!("`{}` comes first by `priority`: ask who set them whether that is meant", name(first))
+            format!(
+                "`{}` has the smaller `priority` number: ask who set them whether that is meant",
+                name(first)
+            )
         };
         Problem::flag("conflict", words, cure)
     }
