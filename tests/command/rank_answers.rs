@@ -151,7 +151,8 @@ fn scenario_the_ranking_is_one_screen_to_read_aloud() {
         let lines: Vec<&str> = text.lines().collect();
         let wide: Vec<&&str> = lines.iter().filter(|l| l.chars().count() > 80).collect();
         assert!(wide.is_empty(), "{arguments:?}: {wide:?}");
-        assert!(lines.len() <= 60, "{} lines: {text}", lines.len());
+        // ten mixes, four rules and every answer
+        assert!(lines.len() <= 64, "{} lines: {text}", lines.len());
         let words = text.replace("the approved\nwater control plan", "").to_lowercase();
         for word in ["compliant", "safe ", "acceptable", "legal", "approved", "probability", "chance"] {
             assert!(!words.contains(word), "{word}: {text}");
