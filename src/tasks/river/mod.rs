@@ -49,7 +49,8 @@ impl RiverAnswer {
     }
 }
 
-/// What arrives of the setting that words say, beside the one now and the best of a ranking at the same release.
+/// What arrives of the setting that words say, beside the one now and the best of the ranking that is asked: as on the
+/// screens, at a release of its own.
 ///
 /// # Errors
 /// As [`mix`]; nothing set, nothing now and nothing ranked.
@@ -66,9 +67,7 @@ pub fn river(
         (None, Err(failure)) => Err(Some(failure)),
     };
     let mut notes = Vec::new();
-    let asked =
-        RankAsked { release: release(tried.as_ref()).or_else(|| asked.release.clone()), ..asked.clone() };
-    let ranked = match rank(context, &asked, progress) {
+    let ranked = match rank(context, asked, progress) {
         Ok(answer) => {
             if answer.mixes.is_empty() {
                 notes.push(Problem::note("no-best", "no mix is allowed: there is no best"));
@@ -90,13 +89,6 @@ pub fn river(
     let mut answer = downstream(context, tried.as_ref(), now.as_ref(), ranked.as_ref());
     answer.notes.extend(notes);
     Ok(answer)
-}
-
-/// The release that is tried, where it is steady: the best is sought at the same.
-fn release(tried: Option<&MixAnswer>) -> Option<String> {
-    let tried = tried.filter(|answer| answer.day.is_none())?;
-    let set: f64 = tried.setting.gates.iter().map(|g| g.flow_m3s).sum();
-    Some(format!("{set} m3/s"))
 }
 
 /// The same of answers that are there already.
