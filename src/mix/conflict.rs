@@ -13,6 +13,9 @@ use super::links::Links;
 /// Ranges that overlap or touch within this leave something in common, C (choice: round-off).
 const ROUND_OFF_C: f64 = 1e-6;
 
+/// Temperatures that water of a river can have, C (choice).
+const WATER_C: (f64, f64) = (0.0, 45.0);
+
 /// Two rules valid on one day that leave no release temperature in common.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Conflict {
@@ -86,7 +89,10 @@ fn conflict(colder: &RuleToday, warmer: &RuleToday, links: &Links) -> Option<Con
     } else {
         [links.release_c(colder, high, true)?, links.release_c(warmer, low, false)?]
     };
-    (bounds_c[0] < bounds_c[1] - ROUND_OFF_C).then_some(Conflict {
+    // a bound that no water can have is out of reach by itself, whatever the other asks
+    let is_water = |c: f64| (WATER_C.0..=WATER_C.1).contains(&c);
+    let apart = bounds_c[0] < bounds_c[1] - ROUND_OFF_C;
+    (apart && bounds_c.into_iter().all(is_water)).then_some(Conflict {
         targets,
         bounds_c,
         same_place: same_water,

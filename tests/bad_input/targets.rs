@@ -110,6 +110,13 @@ pub(super) const REFUSED: &[Case] = &[
     ),
     (
         "oxygen_min: 7",
+        "oxygen_min: 60",
+        "target-oxygen",
+        "targets[0].oxygen_min",
+        "above 15 mg/L is kept by no water",
+    ),
+    (
+        "oxygen_min: 7",
         "oxygen_min: 7, oxygen_min_percent: 80",
         "target-oxygen",
         "targets[0].oxygen_min_percent",

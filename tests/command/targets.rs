@@ -1,5 +1,8 @@
 //! Rules at the dam and at a point in the river, as a user meets them.
 
+use std::fmt::Write as _;
+use std::fs;
+
 use approx::assert_abs_diff_eq;
 use serde_json::Value;
 
@@ -255,4 +258,24 @@ fn scenario_the_change_within_a_day_does_not_run_over_midnight() {
     let [first, second] = [(c[1] - c[0]).abs(), (c[2] - c[1]).abs()];
     assert!((c[2] - c[0]).abs() > first.max(second) + 1e-3, "{c:?}");
     assert_abs_diff_eq!(number(&target(mix, "steps")["value_c"]), first.max(second), epsilon = 1e-9);
+}
+
+#[test]
+fn scenario_a_bound_no_water_can_have_is_no_conflict() {
+    // six days of 12 C leave nothing of a week of 8 C: what is left to today lies below freezing
+    let folder = ruled("  - { name: cool week, statistic: mean_of_days, days: 7, high: 8 }\n");
+    let mut record = String::from("# invented\n# data: reviewed\ntime,temperature_C\n");
+    for day in 7..14 {
+        for hour in 0..24 {
+            let _ = writeln!(record, "2025-07-{day:02}T{hour:02}:00,12");
+        }
+    }
+    fs::write(folder.path().join("tailwater.csv"), record).unwrap();
+    let answer = run(&["mix", folder.named(), "--set", "N1=15", "--set", "Sluice=5", "--json"]).json();
+    let week = target(&answer, "cool week");
+    // (6 x 12 + today) / 7 at most 8 leaves today -16 C
+    assert!((week["today_high_c"].as_f64().unwrap() + 16.0).abs() < 1e-9, "{week}");
+    assert_eq!(week["standing"], "above");
+    let none = |c: &Value| !c["targets"].as_array().unwrap().contains(&"cool week".into());
+    assert!(answer["conflicts"].as_array().unwrap().iter().all(none), "{}", answer["conflicts"]);
 }

@@ -10,6 +10,8 @@ use super::statistic::statistic;
 
 /// The source that marks values as nobody's licence.
 const EXAMPLE_ONLY: &str = "example only";
+/// Highest floor of oxygen that is believed, mg/L (choice: above saturation of any fresh water at sea level).
+const MOST_FLOOR_MG_L: f64 = 15.0;
 /// The word for the temperature of a river in balance with the air.
 const NATURAL: &str = "natural";
 
@@ -45,6 +47,11 @@ impl Checking<'_> {
         if t.oxygen_min_share.is_some_and(|share| share <= 0.0 || share > 2.0) {
             let words = "the floor of oxygen lies outside 0 to 200 % of saturation".to_owned();
             self.refuse("target-oxygen", "oxygen_min_percent", words, "write percent, such as 80");
+        }
+        // fresh water at 0 C holds 14.6 mg/L; more is a slip of the pen or of the unit
+        if t.oxygen_min_mg_l.is_some_and(|least| least > MOST_FLOOR_MG_L) {
+            let words = format!("a floor of oxygen above {MOST_FLOOR_MG_L} mg/L is kept by no water");
+            self.refuse("target-oxygen", "oxygen_min", words, "write mg/L, or oxygen_min_percent");
         }
         let name = t.oxygen_statistic.as_deref()?;
         if t.oxygen_min_mg_l.is_none() && t.oxygen_min_share.is_none() {
