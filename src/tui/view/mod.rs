@@ -7,6 +7,7 @@ mod mix;
 mod pool;
 mod rank;
 mod river;
+mod scroll;
 mod water;
 mod write;
 

@@ -22,13 +22,11 @@ use crate::tui::look::Role;
 use crate::tui::model::{Model, Page, Ranked, Session};
 
 use super::Hit;
-use super::write::{cut, put, put_right, wrapped};
+use super::scroll::{self, Lines};
+use super::write::wrapped;
 
 /// Least rows of what is said of the mix chosen, where the screen has them: the trade curve fits in.
 const BELOW: u16 = 8;
-
-/// Lines with their meaning.
-type Lines = Vec<(String, Role)>;
 
 /// Where the parts lie.
 struct Parts {
@@ -81,22 +79,15 @@ fn parts(screen: &Screen, area: Rect) -> Parts {
 pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
     let Some(screen) = screen(model, session) else {
         let lines = head::without_ranking(model, session, usize::from(area.width));
-        write(&lines, area, 0, model, buf);
+        scroll::write(&lines, area, model.look, buf);
         return;
     };
     let parts = parts(&screen, area);
-    write(&head::lines(&screen, area), parts.head, 0, model, buf);
+    scroll::write(&head::lines(&screen, area), parts.head, model.look, buf);
     list::draw(&screen, parts.list, buf);
-    let (lines, last) = scrolled(&screen, parts.said);
-    let from = session.rank.scroll.min(last);
-    let rows = if last > 0 { parts.said.height.saturating_sub(1) } else { parts.said.height };
-    write(&lines, Rect { height: rows, ..parts.said }, from, model, buf);
-    if last > 0 && parts.said.height > 0 {
-        // a row of its own: words it covered could turn what they say round
-        let below = last - from;
-        let words = if below > 0 { format!("{below} more, PgDn ") } else { "the end, PgUp ".to_owned() };
-        put_right(buf, parts.said, parts.said.width, rows, &words, model.look.style(Role::Key));
-    }
+    let lines = page(&screen, parts.said);
+    let from = session.rank.scroll.min(scroll::last(&lines, parts.said));
+    scroll::scrolled(&lines, parts.said, from, model.look, buf);
     if parts.trade.width > 0 {
         trade(&screen.picture(), parts.trade, buf, model.look);
     }
@@ -128,7 +119,8 @@ pub(super) fn in_short(model: &Model, session: &Session, width: usize) -> Lines 
 /// The furthest that what scrolls can be scrolled.
 pub(super) fn last(model: &Model, session: &Session, area: Rect) -> usize {
     let Some(screen) = screen(model, session) else { return 0 };
-    scrolled(&screen, parts(&screen, area).said).1
+    let said = parts(&screen, area).said;
+    scroll::last(&page(&screen, said), said)
 }
 
 fn screen<'a>(model: &'a Model, session: &'a Session) -> Option<Screen<'a>> {
@@ -136,24 +128,14 @@ fn screen<'a>(model: &'a Model, session: &'a Session) -> Option<Screen<'a>> {
     Some(Screen { model, session, ranked, old: !session.ranks_now() })
 }
 
-/// What scrolls, and how far it can be.
-fn scrolled(screen: &Screen, area: Rect) -> (Lines, usize) {
+/// What scrolls.
+fn page(screen: &Screen, area: Rect) -> Lines {
     let width = usize::from(area.width);
-    let lines = match screen.session.rank.page {
+    match screen.session.rank.page {
         Page::List if screen.ranked.answer.mixes.is_empty() => pages::rejected(screen, width),
         Page::List => said::lines(screen, width),
         Page::Rejected => pages::rejected(screen, width),
         Page::Others => pages::others(screen, width),
-    };
-    let rows = usize::from(area.height);
-    // where not all lines have room, one row tells how many there are
-    let last = if lines.len() > rows { lines.len() - rows.saturating_sub(1) } else { 0 };
-    (lines, last)
-}
-
-fn write(lines: &Lines, area: Rect, from: usize, model: &Model, buf: &mut Buffer) {
-    for (row, (line, role)) in (0..area.height).zip(lines.iter().skip(from)) {
-        put(buf, area, 0, row, &cut(line, usize::from(area.width)), model.look.style(*role));
     }
 }
 

@@ -23,10 +23,8 @@ use crate::tui::look::Role;
 use crate::tui::model::{Downstream, Model, RiverPage, Session};
 
 use super::failure_words;
-use super::write::{cut, put, put_right, wrapped};
-
-/// Lines with their meaning.
-type Lines = Vec<(String, Role)>;
+use super::scroll::{self, Lines};
+use super::write::wrapped;
 
 /// Least rows of the page below, and of a picture (choice).
 const BELOW: u16 = 7;
@@ -94,7 +92,7 @@ fn parts(screen: &Screen, area: Rect) -> Parts {
 /// Draws the river screen.
 pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
     let Some(screen) = screen(model, session) else {
-        write(&without(model, session, usize::from(area.width)), area, 0, model, buf);
+        scroll::write(&without(model, session, usize::from(area.width)), area, model.look, buf);
         return;
     };
     let parts = parts(&screen, area);
@@ -102,24 +100,19 @@ pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffe
     if parts.warmth.height > 0 && screen.has_course() {
         along(&warmth, parts.warmth, buf, model.look);
     } else {
-        write(&no_course(&screen, usize::from(parts.warmth.width)), parts.warmth, 0, model, buf);
+        let words = no_course(&screen, usize::from(parts.warmth.width));
+        scroll::write(&words, parts.warmth, model.look, buf);
     }
     if parts.oxygen.height > 0 {
         along(&oxygen, parts.oxygen, buf, model.look);
     }
     let lines = points::lines(&screen, usize::from(parts.places.width), usize::from(parts.places.height));
-    write(&lines, parts.places, 0, model, buf);
-    let (lines, last) = scrolled(&screen, parts.below);
-    let from = session.river.scroll.min(last);
-    let rows = if last > 0 { parts.below.height.saturating_sub(1) } else { parts.below.height };
-    write(&lines, Rect { height: rows, ..parts.below }, from, model, buf);
+    scroll::write(&lines, parts.places, model.look, buf);
+    let lines = page(&screen, parts.below);
+    let from = session.river.scroll.min(scroll::last(&lines, parts.below));
+    scroll::scrolled(&lines, parts.below, from, model.look, buf);
     if session.river.page == RiverPage::Rules {
-        rules::mark(&screen, (parts.below, Rect { height: rows, ..parts.below }), from, buf);
-    }
-    if last > 0 {
-        let below = last - from;
-        let words = if below > 0 { format!("{below} more, PgDn ") } else { "the end, PgUp ".to_owned() };
-        put_right(buf, parts.below, parts.below.width, rows, &words, model.look.style(Role::Key));
+        rules::mark(&screen, (parts.below, scroll::rows(&lines, parts.below)), from, buf);
     }
 }
 
@@ -135,7 +128,7 @@ pub(super) fn hit(model: &Model, session: &Session, area: Rect, at: Position) ->
         }
     }
     if parts.below.contains(at) && session.river.page == RiverPage::Rules {
-        let (_, last) = scrolled(&screen, parts.below);
+        let last = scroll::last(&page(&screen, parts.below), parts.below);
         let line = usize::from(at.y - parts.below.y) + session.river.scroll.min(last);
         return rules::at_line(&screen, parts.below, line);
     }
@@ -144,7 +137,10 @@ pub(super) fn hit(model: &Model, session: &Session, area: Rect, at: Position) ->
 
 /// The furthest that what scrolls can be scrolled.
 pub(super) fn last(model: &Model, session: &Session, area: Rect) -> usize {
-    screen(model, session).map_or(0, |screen| scrolled(&screen, parts(&screen, area).below).1)
+    screen(model, session).map_or(0, |screen| {
+        let below = parts(&screen, area).below;
+        scroll::last(&page(&screen, below), below)
+    })
 }
 
 /// The main figures, where the window is small.
@@ -185,7 +181,7 @@ fn without(model: &Model, session: &Session, width: usize) -> Lines {
 pub(super) fn in_sight(model: &Model, session: &Session, area: Rect) -> usize {
     let Some(screen) = screen(model, session) else { return 0 };
     let area = parts(&screen, area).below;
-    let (_, last) = scrolled(&screen, area);
+    let last = scroll::last(&page(&screen, area), area);
     let from = session.river.scroll.min(last);
     if session.river.page != RiverPage::Rules {
         return from;
@@ -197,22 +193,13 @@ pub(super) fn in_sight(model: &Model, session: &Session, area: Rect) -> usize {
     from.max(end.saturating_sub(rows)).min(first).min(last)
 }
 
-/// What scrolls, and how far it can be.
-fn scrolled(screen: &Screen, area: Rect) -> (Lines, usize) {
+/// What scrolls.
+fn page(screen: &Screen, area: Rect) -> Lines {
     let width = usize::from(area.width);
-    let lines = match screen.session.river.page {
+    match screen.session.river.page {
         RiverPage::Rules => rules::lines(screen, area),
         RiverPage::Days => days::lines(screen, width),
         RiverPage::Record => record::lines(screen, width),
-    };
-    let rows = usize::from(area.height);
-    let last = if lines.len() > rows { lines.len() - rows.saturating_sub(1) } else { 0 };
-    (lines, last)
-}
-
-fn write(lines: &Lines, area: Rect, from: usize, model: &Model, buf: &mut Buffer) {
-    for (row, (line, role)) in (0..area.height).zip(lines.iter().skip(from)) {
-        put(buf, area, 0, row, &cut(line, usize::from(area.width)), model.look.style(*role));
     }
 }
 
