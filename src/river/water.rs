@@ -111,14 +111,16 @@ impl Stretch<'_> {
         told.held |= held;
         let mut left_m = self.length_m;
         let least_h = LEAST_H.max(h_per_m * self.length_m / MOST_PIECES);
+        // a piece may run over the end of an hour by a tenth of the shortest: seepage lets it end before its plan
+        let over_h = LEAST_H.max(0.1 * least_h);
         let mut k20 = None;
         while left_m > 0.0 {
             let (net, slope) = self.sky.heat(*clock_h, water.temperature_c, reach.shade);
             let per_h = HOUR_S / (HEAT_J_M3_C * reach.depth_m);
             let piece_h = (PIECE_H.min(RELAXED / (-slope * per_h)).min(WARMED_C / (net.abs() * per_h))
                 * self.stride)
-                .min(self.sky.lasts_h(*clock_h))
-                .max(least_h);
+                .max(least_h)
+                .min(self.sky.lasts_h(*clock_h).max(over_h));
             let mut dx = if h_per_m > 0.0 { left_m.min(piece_h / h_per_m) } else { left_m };
             if let Some(s) = seeping {
                 dx = dx.min(GROWTH * self.stride * water.flow_m3s.max(s.per_m_m3s) / s.per_m_m3s);
