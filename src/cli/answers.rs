@@ -11,7 +11,7 @@ use crate::mix::TargetStanding;
 use crate::problem::{Problem, any_refused, harmless};
 use crate::report::{json, text};
 use crate::tasks::rank::RankAsked;
-use crate::tasks::{self, Asked, Failure, Word};
+use crate::tasks::{self, Asked, Failure};
 use crate::tui;
 use crate::units::System;
 
@@ -47,9 +47,9 @@ pub(super) fn answer(cli: &Cli, clock: DateTime<Utc>, progress: Progress) -> Res
             };
             (shown, End::Answered)
         }
-        Some(Command::Mix { common, set, open, release, strict }) => {
+        Some(Command::Mix { common, setting, release, strict }) => {
             let context = tasks::open(&common.asked(), clock)?;
-            let answer = tasks::mix(&context, &setting_words(set, open, release.as_deref()))?;
+            let answer = tasks::mix(&context, &setting.words(release.as_deref()))?;
             let shown = if common.json {
                 json::mix(&context, &answer)
             } else {
@@ -70,10 +70,10 @@ pub(super) fn answer(cli: &Cli, clock: DateTime<Utc>, progress: Progress) -> Res
             let missed = best.is_none_or(|best| best.targets.iter().any(TargetStanding::missed));
             (shown, strictly(*strict, missed))
         }
-        Some(Command::River { common, set, open, release, strict }) => {
+        Some(Command::River { common, setting, release, strict }) => {
             let context = tasks::open(&common.asked(), clock)?;
-            let alone = set.is_empty() && open.is_empty();
-            let words = if alone { Vec::new() } else { setting_words(set, open, release.as_deref()) };
+            let alone = setting.set.is_empty() && setting.open.is_empty();
+            let words = if alone { Vec::new() } else { setting.words(release.as_deref()) };
             let ranked = RankAsked { release: release.clone().filter(|_| alone), ..RankAsked::default() };
             let answer = tasks::river::river(&context, &words, &ranked, &|done| progress.tell(done))?;
             drop(progress);
@@ -106,14 +106,6 @@ pub(super) fn answer(cli: &Cli, clock: DateTime<Utc>, progress: Progress) -> Res
         }
     };
     Ok((shown.into_bytes(), end))
-}
-
-/// A setting as it was typed.
-fn setting_words<'a>(set: &'a [String], open: &'a [String], release: Option<&'a str>) -> Vec<Word<'a>> {
-    (set.iter().map(|text| Word::Set(text)))
-        .chain(open.iter().map(|text| Word::Open(text)))
-        .chain(release.map(Word::Release))
-        .collect()
 }
 
 /// A lone word that is neither a path nor a demonstration site was meant as a command.

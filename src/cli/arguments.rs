@@ -4,8 +4,8 @@ use std::path::PathBuf;
 
 use clap::{Args, Parser, Subcommand, ValueEnum};
 
-use crate::tasks::Asked;
 use crate::tasks::rank::RankAsked;
+use crate::tasks::{Asked, Word};
 use crate::units::System;
 
 use super::colour::Colour;
@@ -31,13 +31,8 @@ pub(super) enum Command {
     Mix {
         #[command(flatten)]
         common: Common,
-        /// A gate and its flow, such as N1=30 or Sluice=5cfs, with its opening where that is known (N1=30@50%), or a
-        /// well and its total; repeat for each. Without any setting, the one now.
-        #[arg(long = "set", value_name = "GATE=FLOW")]
-        set: Vec<String>,
-        /// A gate and its opening, such as N1=50% or the name of a position; its well decides the flow.
-        #[arg(long = "open", value_name = "GATE=OPENING")]
-        open: Vec<String>,
+        #[command(flatten)]
+        setting: Setting,
         /// What the well of the gates opened carries, where only one well has any and nothing is set beside.
         #[arg(long, value_name = "FLOW")]
         release: Option<String>,
@@ -59,12 +54,8 @@ pub(super) enum Command {
     River {
         #[command(flatten)]
         common: Common,
-        /// A gate and its flow, as `mix` takes it; repeat for each. Without any setting, the one now.
-        #[arg(long = "set", value_name = "GATE=FLOW")]
-        set: Vec<String>,
-        /// A gate and its opening, as `mix` takes it; its well decides the flow.
-        #[arg(long = "open", value_name = "GATE=OPENING")]
-        open: Vec<String>,
+        #[command(flatten)]
+        setting: Setting,
         /// What the well of the gates opened carries; without a setting, the total release the best is ranked at.
         #[arg(long, value_name = "FLOW")]
         release: Option<String>,
@@ -157,6 +148,28 @@ impl Common {
             on: self.on.clone(),
             units: self.units.map(Units::system),
         }
+    }
+}
+
+// a doc comment here would stand as what its command is about
+#[derive(Debug, Args)]
+pub(super) struct Setting {
+    /// A gate and its flow, such as N1=30 or Sluice=5cfs, with its opening where that is known (N1=30@50%), or a
+    /// well and its total; repeat for each. Without any setting, the one now.
+    #[arg(long = "set", value_name = "GATE=FLOW")]
+    pub(super) set: Vec<String>,
+    /// A gate and its opening, such as N1=50% or the name of a position; its well decides the flow.
+    #[arg(long = "open", value_name = "GATE=OPENING")]
+    pub(super) open: Vec<String>,
+}
+
+impl Setting {
+    /// What was typed, with what the opened gates are to carry.
+    pub(super) fn words<'a>(&'a self, release: Option<&'a str>) -> Vec<Word<'a>> {
+        (self.set.iter().map(|text| Word::Set(text)))
+            .chain(self.open.iter().map(|text| Word::Open(text)))
+            .chain(release.map(Word::Release))
+            .collect()
     }
 }
 
