@@ -10,6 +10,7 @@ pub mod profile;
 pub mod rank;
 pub mod report;
 pub mod river;
+pub mod season;
 pub mod series;
 pub mod site;
 pub mod target;

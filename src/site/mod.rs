@@ -11,6 +11,7 @@ mod pool;
 mod raw;
 mod raw_river;
 mod river;
+mod season;
 mod travel;
 
 use chrono::{FixedOffset, NaiveDate};
@@ -31,6 +32,7 @@ pub use raw::{
 };
 pub use raw_river::{RawAfterbay, RawInflow, RawMonthly, RawPoint, RawReach, RawRiver, RawSeepage};
 pub use river::{Afterbay, Decay, Inflow, Point, Reach, River, Seepage, Surface, Yearly};
+pub use season::{Case, Knobs, Reserve, SeasonInputs, Stages, Strategy};
 pub use travel::{BULK_PER_WATER, MOST_TRAVEL_H, ROUGHNESS, hours_at};
 
 /// Where the dam stands.
@@ -256,6 +258,8 @@ pub struct Site {
     pub columns: Vec<(String, String)>,
     /// Casts whose time or pool the site file gives.
     pub casts: Vec<ListedCast>,
+    /// How the season ahead is looked at.
+    pub season: SeasonInputs,
     /// Invented data.
     pub demonstration: bool,
 }

@@ -5,7 +5,7 @@ use crate::units::Folder;
 
 use super::{
     BandInputs, Bins, Block, CastChecks, Chemistry, Crew, GenerationLost, Leakage, ListedCast, Opens,
-    Position, RawRiver, RawRow, WidthSource,
+    Position, RawRiver, RawRow, SeasonInputs, WidthSource,
 };
 
 /// Pool as read.
@@ -335,6 +335,8 @@ pub struct Raw {
     pub columns: Vec<(String, String)>,
     /// Listed casts.
     pub casts: Vec<ListedCast>,
+    /// How the season ahead is looked at.
+    pub season: SeasonInputs,
     /// Invented data.
     pub demonstration: bool,
 }

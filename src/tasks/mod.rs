@@ -28,6 +28,7 @@ mod mix;
 mod pool;
 pub mod rank;
 pub mod river;
+pub mod season;
 mod setting;
 mod since;
 mod solve;

@@ -104,6 +104,7 @@ impl Site {
                 band: raw.band,
                 columns: raw.columns.clone(),
                 casts: raw.casts.clone(),
+                season: raw.season.clone(),
                 demonstration: raw.demonstration,
             })
         })();
