@@ -7,19 +7,27 @@
 //! Methods: `docs/methods.md`, section 8.
 
 mod balance;
+mod beware;
+mod cold;
 mod decide;
+mod gates;
 mod layers;
 mod outcome;
 mod plan;
+mod reached;
 mod run;
 mod skies;
+mod stages;
 mod step;
 mod tally;
 
 pub use balance::{Balance, Terms};
 pub use decide::{Decision, Why};
 pub use layers::{Layer, Layers};
-pub use outcome::{ColdDay, ColdWater, Exhausted, GateLife, Outcome, StageDate, Stopping, outcome};
+pub use outcome::{
+    Asks, ColdDay, ColdWater, Exhausted, GateLife, GateMoves, Outcome, Reached, StageDate, StageFall,
+    Stopping, outcome,
+};
 pub use plan::{Plan, PlanDay, RawPlan, RawPlanRow, Schedule};
 pub use run::{Choosing, Ended, Run, SeasonDay, Setup, run};
 pub use skies::{Skies, Sky};
