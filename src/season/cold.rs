@@ -9,8 +9,9 @@ use crate::site::{Reserve, Site};
 use crate::target::YearDay;
 
 use super::gates::usable;
-use super::outcome::{ColdDay, ColdWater, Exhausted};
+use super::outcome::{ColdDay, ColdWater, Exhausted, Left};
 use super::run::SeasonDay;
+use super::tally::{TargetTally, tallies};
 
 /// Lowest elevation that the deepest outlet usable on a day draws from at the release of that day, m; `None` where
 /// none is usable.
@@ -33,6 +34,21 @@ pub(super) fn by_day(
         ColdDay { date: day.date, total_m3: above(site.pool.bed_m), usable_m3: reach.map(above) }
     };
     ColdWater { threshold_c, days: days.iter().zip(reaches_m).map(one).collect() }
+}
+
+/// What was left below a threshold on the first of every month, with the days outside hard targets that came after.
+pub(super) fn left(site: &Site, cold: Option<&ColdWater>, days: &[SeasonDay]) -> Vec<Left> {
+    let of = |(i, day): (usize, &ColdDay)| {
+        let after = tallies(site, days.get(i + 1..).unwrap_or_default());
+        let hard = after.iter().filter(|t| site.targets.get(t.target).is_some_and(|rule| !rule.soft));
+        Left {
+            date: day.date,
+            usable_m3: day.usable_m3,
+            days_outside: hard.map(TargetTally::days_outside).sum(),
+        }
+    };
+    let first_of_month = |(_, day): &(usize, &ColdDay)| day.date.day() == 1;
+    cold.into_iter().flat_map(|cold| cold.days.iter().enumerate().filter(first_of_month).map(of)).collect()
 }
 
 /// First day on which usable water colder than a reserve asks is less than it keeps, between its day of the year and

@@ -25,7 +25,7 @@ pub use balance::{Balance, Terms};
 pub use decide::{Decision, Why};
 pub use layers::{Layer, Layers};
 pub use outcome::{
-    Asks, ColdDay, ColdWater, Exhausted, GateLife, GateMoves, Outcome, Reached, StageDate, StageFall,
+    Asks, ColdDay, ColdWater, Exhausted, GateLife, GateMoves, Left, Outcome, Reached, StageDate, StageFall,
     Stopping, outcome,
 };
 pub use plan::{Plan, PlanDay, RawPlan, RawPlanRow, Schedule};

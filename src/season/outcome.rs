@@ -8,7 +8,7 @@ use crate::mix::limits::Move;
 use crate::site::Site;
 
 use super::run::{Run, SeasonDay, Setup};
-use super::tally::{TargetTally, tallies};
+use super::tally::{Score, TargetTally, tallies};
 use super::{beware, cold, gates, reached, stages};
 
 /// Cold water on a day.
@@ -29,6 +29,17 @@ pub struct ColdWater {
     pub threshold_c: f64,
     /// By day.
     pub days: Vec<ColdDay>,
+}
+
+/// What was left on a date, and what came of it.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Left {
+    /// The day, at its end.
+    pub date: NaiveDate,
+    /// Usable water below the first threshold of the site, m3; `None` where no outlet is usable.
+    pub usable_m3: Option<f64>,
+    /// Days after it outside hard targets, summed over the targets.
+    pub days_outside: u32,
 }
 
 /// When something runs out.
@@ -172,6 +183,8 @@ pub struct Outcome {
     pub cold: Vec<ColdWater>,
     /// Cold water below the threshold of each reserve of the site, by day, and the first day under it.
     pub reserves: Vec<(ColdWater, Exhausted)>,
+    /// What was left on the first of every month.
+    pub left: Vec<Left>,
     /// First day from which no allowed mix reaches the high of the target at the required release.
     pub exhausted: Exhausted,
     /// First day under a reserve of the site; `None` where it has none.
@@ -184,6 +197,8 @@ pub struct Outcome {
     pub calendar: Vec<GateMoves>,
     /// Every target.
     pub targets: Vec<TargetTally>,
+    /// What the season is measured by.
+    pub score: Score,
     /// Stages.
     pub stages: Vec<StageDate>,
     /// Gates moved.
@@ -223,9 +238,11 @@ pub fn outcome(setup: &Setup, run: &Run) -> Outcome {
         })
         .collect();
     let reached = reached::reached(setup, site, run);
+    let cold: Vec<ColdWater> = site.cold_water_c.iter().map(|&c| colder(c)).collect();
     let largest = |of: fn(&SeasonDay) -> f64| days.iter().map(of).fold(0.0, f64::max);
     Outcome {
-        cold: site.cold_water_c.iter().map(|&c| colder(c)).collect(),
+        left: cold::left(site, cold.first(), days),
+        cold,
         under_reserve: first(reserves.iter().map(|r| &r.1)),
         reserves,
         exhausted: reached::exhausted(site, &reached, run),
@@ -233,6 +250,7 @@ pub fn outcome(setup: &Setup, run: &Run) -> Outcome {
         gates: gates::lives(site, days),
         calendar: gates::moves(site, setup, run),
         targets: tallies(site, days),
+        score: Score::of(site, run),
         stages: stages::stages(site, days),
         moves: run.decisions.iter().map(|d| d.moves).sum(),
         crew_hours: run.decisions.iter().map(|d| d.crew_hours).sum(),
