@@ -22,6 +22,13 @@ pub struct ColdDay {
     pub usable_m3: Option<f64>,
 }
 
+impl ColdDay {
+    /// What no usable outlet can draw, m3.
+    pub fn unreachable_m3(&self) -> f64 {
+        self.total_m3 - self.usable_m3.unwrap_or(0.0)
+    }
+}
+
 /// Cold water below one threshold, day by day.
 #[derive(Debug, Clone, PartialEq)]
 pub struct ColdWater {

@@ -31,6 +31,13 @@ pub struct SeasonRun {
     pub foresight: bool,
 }
 
+impl SeasonRun {
+    /// Whether a day lies outside a hard target, or the season stops before its plan.
+    pub fn missed(&self) -> bool {
+        self.outcome.score.days_outside > 0 || self.run.ended.is_some()
+    }
+}
+
 /// The answer of `season`.
 #[derive(Debug, Clone)]
 pub struct SeasonAnswer {

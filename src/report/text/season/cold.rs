@@ -2,7 +2,7 @@
 
 use chrono::{Datelike, NaiveDate};
 
-use crate::season::{ColdDay, ColdWater};
+use crate::season::ColdWater;
 use crate::tasks::Context;
 use crate::tasks::season::SeasonRun;
 use crate::units::System;
@@ -34,7 +34,7 @@ fn table(water: &ColdWater, system: System) -> Vec<String> {
     let last = water.days.last().map(|day| day.date);
     for day in water.days.iter().filter(|day| is_shown(day.date) || Some(day.date) == last) {
         let usable = day.usable_m3.map_or_else(|| "no gate usable".to_owned(), |m3| volume(m3, system));
-        let beyond = volume(unreachable_m3(day), system);
+        let beyond = volume(day.unreachable_m3(), system);
         let all = volume(day.total_m3, system);
         out.push(format!("{:<DATE$}{usable:>CELL$}{beyond:>CELL$}{all:>CELL$}", day.date));
     }
@@ -43,11 +43,6 @@ fn table(water: &ColdWater, system: System) -> Vec<String> {
 
 fn is_shown(date: NaiveDate) -> bool {
     matches!(date.day(), 1 | 15)
-}
-
-/// Cold water that no usable outlet can draw, m3.
-fn unreachable_m3(day: &ColdDay) -> f64 {
-    day.total_m3 - day.usable_m3.unwrap_or(0.0)
 }
 
 /// What was left on the first of every month, and how many days came to lie outside from then on: of this season, as
