@@ -130,7 +130,8 @@ pub(crate) fn years(site: &Site) -> Years {
 
 /// Every file beside `site.yaml`: its path in the folder and its text.
 pub(crate) fn files(site: &Site, years: &Years) -> Vec<(String, String)> {
-    let mut files: Vec<_> = years.casts.iter().map(|cast| cast.file("Sorrel Dam on the Tamble River")).collect();
+    let mut files: Vec<_> =
+        years.casts.iter().map(|cast| cast.file("Sorrel Dam on the Tamble River")).collect();
     files.push(("weather.csv".into(), weather::file(years)));
     files.extend(stations::files(site, years));
     files
