@@ -10,6 +10,7 @@ mod observed;
 mod pool;
 mod rejected;
 mod river;
+mod season;
 mod series;
 mod series_pandas;
 mod table;

@@ -79,13 +79,7 @@ pub(super) fn date() -> NaiveDate {
 }
 
 pub(super) fn no_inflow() -> Inflow {
-    Inflow {
-        flow_m3s: 0.0,
-        temperature_c: 10.0,
-        oxygen_mg_l: None,
-        salt_g_per_kg: 0.0,
-        suspended_mg_l: 0.0,
-    }
+    Inflow { flow_m3s: 0.0, temperature_c: 10.0, oxygen_mg_l: None, salt_g_per_kg: 0.0, suspended_mg_l: 0.0 }
 }
 
 pub(super) fn air(temperature_c: f64, wind_m_s: f64, solar_w_m2: f64) -> Air {
@@ -93,7 +87,13 @@ pub(super) fn air(temperature_c: f64, wind_m_s: f64, solar_w_m2: f64) -> Air {
 }
 
 /// One day under a sky with levels drawing.
-pub(super) fn go(layers: &mut Layers, site: &Site, sky: Option<Sky>, inflow: Inflow, draws: &[Level]) -> Stepped {
+pub(super) fn go(
+    layers: &mut Layers,
+    site: &Site,
+    sky: Option<Sky>,
+    inflow: Inflow,
+    draws: &[Level],
+) -> Stepped {
     let forcing = Forcing { date: date(), sky, inflow };
     let levels = |_: &Column, _: f64| draws.to_vec();
     day(layers, site, &forcing, &levels).unwrap_or_else(|e| panic!("{e:?}"))
