@@ -11,6 +11,7 @@ mod levels;
 pub mod limits;
 mod links;
 mod place;
+pub mod split;
 mod standing;
 mod wells;
 
@@ -18,7 +19,7 @@ pub use band::{GREATEST_LOSS, LEAST_LOSS, Member, Perturbed, Spread, members};
 pub use blend::{Blend, Drawn, blend, draw_levels, overlapping, release, release_joined};
 pub use conflict::{Conflict, conflicts};
 pub use day::{Day, RuleToday, reference_days};
-pub use judge::{Mix, judge, refusals};
+pub use judge::{Mix, checks, judge, refusals};
 pub use levels::{Gate, Level, Seat, Setting, as_one, groups, levels, seat};
 pub use links::Links;
 pub use standing::{Held, Part, TargetStanding, held, is_wish, standings};

@@ -110,6 +110,5 @@ pub struct Run {
 
 /// Runs a season. `progress` is told the share of its days done and may stop it: `None` then.
 pub fn run(setup: &Setup, progress: &(dyn Fn(f64) -> ControlFlow<()> + Sync)) -> Option<Run> {
-    let _ = (setup, progress);
-    None
+    Going::new(setup)?.to_the_end(progress)
 }
