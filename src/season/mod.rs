@@ -7,8 +7,11 @@
 //! Methods: `docs/methods.md`, section 8.
 
 mod balance;
+mod beware;
+mod cold;
 mod decide;
 mod diffusion;
+mod gates;
 mod inflow;
 mod layers;
 mod mixing;
@@ -16,11 +19,13 @@ mod outcome;
 mod outflow;
 mod oxygen;
 mod plan;
+mod reached;
 mod refine;
 mod reshape;
 mod run;
 mod set;
 mod skies;
+mod stages;
 mod step;
 mod surface;
 mod tally;
@@ -31,7 +36,10 @@ pub use diffusion::{diffuse, diffusivity_m2_s};
 pub use inflow::{Neutral, neutral};
 pub use layers::{Layer, Layers};
 pub use mixing::{friction_velocity_m_s, mixing_energy_j, wind_work_j_m2};
-pub use outcome::{ColdDay, ColdWater, Exhausted, GateLife, Outcome, StageDate, Stopping, outcome};
+pub use outcome::{
+    Asks, ColdDay, ColdWater, Exhausted, GateLife, GateMoves, Left, Outcome, Reached, StageDate, StageFall,
+    Stopping, outcome,
+};
 pub use oxygen::{demand_at, left_mg_l};
 pub use plan::{Plan, PlanDay, RawPlan, RawPlanRow, Schedule};
 pub use run::{Choosing, Ended, Run, SeasonDay, Setup, run};
