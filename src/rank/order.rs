@@ -35,8 +35,7 @@ impl Order {
     /// what they prefer, C.
     pub fn off_c(&self, temperature_c: f64) -> (f64, f64) {
         let days = steady(temperature_c);
-        let ([outside], [far]) =
-            (self.goal.outside_c::<1, 1>(&days), self.goal.distances_c::<1, 1>(&days));
+        let ([outside], [far]) = (self.goal.outside_c::<1, 1>(&days), self.goal.distances_c::<1, 1>(&days));
         (outside, far)
     }
 

@@ -7,7 +7,7 @@ use chrono::NaiveDate;
 use crate::mix::limits::{self, Before, Check, Moves};
 use crate::mix::{Asked, Day, Drawn, Setting, checks};
 use crate::profile::Profile;
-use crate::rank::{Criterion, Full, Order, Progress, Question, Ranking, Stopped, rank};
+use crate::rank::{Criterion, Full, Order, Progress, Question, Ranked, Ranking, Stopped, rank};
 use crate::site::Site;
 
 use super::refine::refined;
@@ -134,15 +134,16 @@ impl Choice<'_> {
         }
         let order = Order::of(&self.question(self.site));
         let tried = ranking.mixes.iter().filter_map(|mix| self.tried(mix.asked.first()?, &order));
-        let all: Vec<Chosen> =
-            tried.filter(|t| t.keeps(is_free)).map(|t| self.chosen(t, &ranking)).collect();
+        let all: Vec<Chosen> = tried.filter(|t| t.keeps(is_free)).map(|t| self.chosen(t, &ranking)).collect();
         if all.is_empty() { Err(none_allowed(self.site, &ranking)) } else { Ok(Some(all)) }
     }
 
-    /// Coldest and warmest release that an allowed mix gives, C.
-    pub(super) fn attainable_c(&self, progress: Progress) -> Result<Option<[f64; 2]>, NoMix> {
+    /// What is set whatever the ranking says, with what could be reached instead.
+    pub(super) fn given(&self, asked: Asked, progress: Progress) -> Result<Chosen, NoMix> {
         let (ranking, _) = self.ranked(progress)?;
-        Ok(self.extremes_c(&ranking))
+        let order = Order::of(&self.question(self.site));
+        let tried = self.tried(&asked, &order);
+        tried.map(|tried| self.chosen(tried, &ranking)).ok_or_else(|| none_allowed(self.site, &ranking))
     }
 
     /// The ranking, and whether it is one without the limits of the change since no mix keeps them.
@@ -154,7 +155,11 @@ impl Choice<'_> {
             })
         };
         let strict = ranked(self.site)?;
-        if strict.mixes.is_empty() { Ok((ranked(&without_change(self.site))?, true)) } else { Ok((strict, false)) }
+        if strict.mixes.is_empty() {
+            Ok((ranked(&without_change(self.site))?, true))
+        } else {
+            Ok((strict, false))
+        }
     }
 
     fn question<'b>(&'b self, site: &'b Site) -> Question<'b> {
@@ -180,8 +185,7 @@ impl Choice<'_> {
     pub(super) fn tried(&self, asked: &Asked, order: &Order) -> Option<Tried> {
         let Flowing { setting, drawn, release } = self.flowing(asked)?;
         let column = &self.profile.column;
-        let still =
-            checks(self.site, column, &setting, self.profile.pool_m, self.day.date, &drawn, &release);
+        let still = checks(self.site, column, &setting, self.profile.pool_m, self.day.date, &drawn, &release);
         let mut change = Vec::new();
         let moves = self.now.map_or_else(Moves::default, |now| {
             limits::change(self.site, now, self.before, &setting, &release, &mut change)
@@ -203,9 +207,7 @@ impl Choice<'_> {
     }
 
     fn extremes_c(&self, ranking: &Ranking) -> Option<[f64; 2]> {
-        let in_full = |mix: &crate::rank::Ranked| {
-            Some(self.flowing(mix.asked.first()?)?.release.temperature_c)
-        };
+        let in_full = |mix: &Ranked| Some(self.flowing(mix.asked.first()?)?.release.temperature_c);
         let [coldest, warmest] = ranking.attainable_c.as_ref()?.each_ref().map(|e| in_full(&e.mix));
         Some([coldest?, warmest?])
     }
@@ -229,7 +231,10 @@ impl Tried {
     /// Whether it comes before another.
     fn before(&self, other: &Self) -> bool {
         let order = self.key.total_cmp(&other.key);
-        order.then(self.off_c.0.total_cmp(&other.off_c.0)).then(self.off_c.1.total_cmp(&other.off_c.1)).is_lt()
+        order
+            .then(self.off_c.0.total_cmp(&other.off_c.0))
+            .then(self.off_c.1.total_cmp(&other.off_c.1))
+            .is_lt()
     }
 }
 

@@ -16,7 +16,8 @@ use gatemix::tasks::{Asked, now_setting, open};
 fn ranking() -> Option<()> {
     let clock = DateTime::from_timestamp(1_784_000_000, 0)?;
     let site = std::env::args().skip_while(|a| a != "once").nth(1).unwrap_or_else(|| "ashlar".into());
-    let steps = std::env::args().skip_while(|a| a != "once").nth(2).and_then(|s| s.parse().ok()).unwrap_or(10);
+    let steps =
+        std::env::args().skip_while(|a| a != "once").nth(2).and_then(|s| s.parse().ok()).unwrap_or(10);
     let context = open(&Asked { site: Some(site), ..Asked::default() }, clock).ok()?;
     let now = now_setting(&context).ok()?.setting;
     let order = Criterion::NAMES.map(|c| c.1);
@@ -38,9 +39,14 @@ fn ranking() -> Option<()> {
         let ranking = rank(&question, &|_| ControlFlow::Continue(())).ok()?;
         println!(
             "{} judged, {} allowed, {} mixes, {:.4} s",
-            ranking.judged, ranking.allowed, ranking.mixes.len(), start.elapsed().as_secs_f64()
+            ranking.judged,
+            ranking.allowed,
+            ranking.mixes.len(),
+            start.elapsed().as_secs_f64()
         );
-        for m in ranking.mixes.iter().take(3) { println!("  {:?} {:.3}", m.open, m.temperature_c); }
+        for m in ranking.mixes.iter().take(3) {
+            println!("  {:?} {:.3}", m.open, m.temperature_c);
+        }
     }
     Some(())
 }

@@ -1,8 +1,8 @@
 //! Answers beyond the list: the trade between temperature and oxygen, lost gates, the exact split, the least release,
 //! and what more of it does.
 
-use crate::mix::limits::Check;
 use crate::mix::Gate;
+use crate::mix::limits::Check;
 use crate::mix::split::Part;
 use crate::rank::{Criterion, Progress, Question, Ranked, Ranking, Seen, rank as search};
 use crate::tasks::solve::{preferred_c, roots};
