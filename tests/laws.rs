@@ -24,6 +24,8 @@ mod river;
 mod series;
 #[path = "laws/shape.rs"]
 mod shape;
+#[path = "laws/skies.rs"]
+mod skies;
 #[path = "laws/weather.rs"]
 mod weather;
 #[path = "laws/wells/mod.rs"]
