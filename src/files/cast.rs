@@ -369,5 +369,18 @@ pub fn parse_time(text: &str, offset: FixedOffset) -> Result<DateTime<FixedOffse
         .ok_or_else(|| format!("`{text}` is not a date and time of our days"))
 }
 
+/// A day as written: year, month and day.
+///
+/// # Errors
+/// A problem that names what was written.
+pub(super) fn parse_date(text: &str) -> Result<NaiveDate, Problem> {
+    let text = text.trim();
+    let date = NaiveDate::parse_from_str(text, "%Y-%m-%d").ok();
+    date.filter(|date| YEARS.contains(&date.year())).ok_or_else(|| {
+        let short: String = text.chars().take(40).collect();
+        Problem::refused("time", format!("`{short}` is not a date of our days"), "write 2025-07-14")
+    })
+}
+
 /// Years a cast or a decision can be of (choice): others are slips of the pen.
 pub(super) const YEARS: std::ops::RangeInclusive<i32> = 1900..=2200;

@@ -19,13 +19,18 @@ use inside::inside;
 mod around;
 mod found;
 mod inside;
+mod plans;
 
 pub use around::Around;
 pub use found::{Found, Stamps, sites_in, stamps};
 pub use inside::{demonstration_files, demonstrations};
+pub use plans::{ListedPlan, ReadSchedule, Years};
 
 /// The file that makes a folder a site.
 const SITE_FILE: &str = "site.yaml";
+
+/// Where the casts of a site are.
+const PROFILES: &str = "profiles";
 
 /// Where a site's files are.
 #[derive(Debug, Clone)]
@@ -47,6 +52,10 @@ pub struct Folder {
     casts: Arc<OnceLock<Vec<Listed>>>,
     /// The files beside them, once they were asked for.
     around: Arc<OnceLock<Around>>,
+    /// Every plan, once they were asked for.
+    plans: Arc<OnceLock<Vec<ListedPlan>>>,
+    /// The weather of years, once it was asked for.
+    years: Arc<OnceLock<Years>>,
 }
 
 /// Why a site cannot be opened, and the units its user reads.
@@ -127,9 +136,16 @@ impl Folder {
         let mut notes = read.problems;
         notes.extend(source.note());
         match read.site {
-            Some(site) => {
-                Ok(Self { root, site, notes, source, casts: Arc::default(), around: Arc::default() })
-            }
+            Some(site) => Ok(Self {
+                root,
+                site,
+                notes,
+                source,
+                casts: Arc::default(),
+                around: Arc::default(),
+                plans: Arc::default(),
+                years: Arc::default(),
+            }),
             None => Err(Refused { problems: notes, system: read.system }),
         }
     }
@@ -150,7 +166,8 @@ impl Folder {
                     Listed { file: name, raw, problems, source: Some(source) }
                 }
             };
-            let mut casts: Vec<Listed> = self.cast_sources(|_| true).into_iter().map(listed).collect();
+            let mut casts: Vec<Listed> =
+                self.csv_sources(PROFILES, |_| true).into_iter().map(listed).collect();
             casts.sort_by(|a, b| {
                 let taken = |l: &Listed| l.raw.as_ref().and_then(|r| r.taken);
                 taken(a).cmp(&taken(b)).then_with(|| a.file.cmp(&b.file))
@@ -174,10 +191,17 @@ impl Folder {
                 );
             }
         }
+        out.into_iter().map(|problem| self.located(problem)).collect()
+    }
+
+    /// A problem at a key of the site file, on its line.
+    fn located(&self, problem: Problem) -> Problem {
+        let mut one = [problem];
         if let Ok(document) = Document::parse(&self.source.text) {
-            document.locate(&mut out, &self.source.name);
+            document.locate(&mut one, &self.source.name);
         }
-        out
+        let [problem] = one;
+        problem
     }
 
     /// When the newest cast of the folder was taken.
@@ -191,17 +215,21 @@ impl Folder {
         listed.map_or_else(Told::default, |c| Told { taken: c.taken.clone(), pool_m: c.pool_m })
     }
 
-    /// The casts of the folder whose names are wanted, as they are now.
-    fn cast_sources(&self, wanted: impl Fn(&str) -> bool) -> Vec<(String, Result<Source, Problem>)> {
+    /// The CSV files of a folder of the site whose names are wanted, as they are now.
+    fn csv_sources(
+        &self,
+        below: &str,
+        wanted: impl Fn(&str) -> bool,
+    ) -> Vec<(String, Result<Source, Problem>)> {
         match &self.root {
             Root::Inside(name) => demonstration_files()
                 .into_iter()
                 .filter_map(|(path, _)| Some(path.to_str()?.to_owned()))
-                .filter(|path| path.starts_with(&format!("{name}/profiles/")) && is_csv(Path::new(path)))
+                .filter(|path| path.starts_with(&format!("{name}/{below}/")) && is_csv(Path::new(path)))
                 .filter(|path| wanted(path))
                 .filter_map(|path| Some((path.clone(), inside(&path)?)))
                 .collect(),
-            Root::Disk(root) => cast_paths(root)
+            Root::Disk(root) => csv_paths(root, below)
                 .into_iter()
                 .map(|path| (path.display().to_string(), path))
                 .filter(|(name, _)| wanted(name))
@@ -269,7 +297,7 @@ impl Folder {
     /// Every problem of it.
     pub fn cast(&self, named: &str, taken: Option<&str>, pool_m: Option<f64>) -> Result<Read, Vec<Problem>> {
         let within = |name: &str| base(name) == named && !Path::new(named).exists();
-        let source = match self.cast_sources(within).pop() {
+        let source = match self.csv_sources(PROFILES, within).pop() {
             Some((_, source)) => source,
             None => text::read(Path::new(named), Format::Csv),
         }
@@ -287,7 +315,7 @@ impl Folder {
     /// # Errors
     /// Every problem of it, or that there is none.
     pub fn own_cast(&self, file: &str) -> Result<Read, Vec<Problem>> {
-        let own = self.cast_sources(|name| name == file || base(name) == file).pop();
+        let own = self.csv_sources(PROFILES, |name| name == file || base(name) == file).pop();
         let (name, source) = own.ok_or_else(|| {
             vec![Problem::refused("missing-file", "there is no such cast in `profiles`", "").in_file(file)]
         })?;
@@ -353,9 +381,9 @@ fn places(path: &Path) -> (PathBuf, PathBuf) {
     }
 }
 
-/// The files of the casts of a site folder, in order.
-fn cast_paths(root: &Path) -> Vec<PathBuf> {
-    let entries = std::fs::read_dir(root.join("profiles")).into_iter().flatten();
+/// The CSV files of a folder of a site, in order.
+fn csv_paths(root: &Path, below: &str) -> Vec<PathBuf> {
+    let entries = std::fs::read_dir(root.join(below)).into_iter().flatten();
     let mut paths: Vec<PathBuf> =
         entries.filter_map(|e| Some(e.ok()?.path())).filter(|p| is_csv(p)).collect();
     paths.sort();
@@ -371,7 +399,7 @@ fn is_csv(path: &Path) -> bool {
     path.extension().is_some_and(|e| e.eq_ignore_ascii_case("csv"))
 }
 
-/// Every problem of a site folder: the site file, then each cast; and the units its user reads.
+/// Every problem of a site folder: the site file, each cast, the files beside them, each plan, the weather of years; and the units its user reads.
 pub fn check(named: &str) -> (Vec<Problem>, System) {
     match Folder::open(named) {
         Err(refused) => (refused.problems, refused.system),
@@ -383,6 +411,8 @@ pub fn check(named: &str) -> (Vec<Problem>, System) {
                 problems.extend(folder.profile_of(listed).1);
             }
             problems.extend(folder.around().problems.iter().cloned());
+            problems.extend(folder.plans().iter().flat_map(|listed| listed.problems.iter().cloned()));
+            problems.extend(folder.years().iter().flat_map(|years| years.problems.iter().cloned()));
             (problems, folder.site.units.system())
         }
     }

@@ -8,6 +8,8 @@ pub mod cast;
 pub mod cursor;
 pub mod folder;
 mod lines;
+pub mod plan;
+pub mod schedule;
 pub mod settings;
 pub mod site;
 pub mod station;

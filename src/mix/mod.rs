@@ -11,15 +11,18 @@ mod levels;
 pub mod limits;
 mod links;
 mod place;
+mod reach;
 mod standing;
 mod wells;
 
 pub use band::{GREATEST_LOSS, LEAST_LOSS, Member, Perturbed, Spread, members};
+pub use beware::LOW_OXYGEN_SHARE;
 pub use blend::{Blend, Drawn, blend, draw_levels, overlapping, release, release_joined};
 pub use conflict::{Conflict, conflicts};
 pub use day::{Day, RuleToday, reference_days};
 pub use judge::{Mix, judge, refusals};
 pub use levels::{Gate, Level, Seat, Setting, as_one, groups, levels, seat};
 pub use links::Links;
+pub use reach::{OutletState, outlet_states, reach_m};
 pub use standing::{Held, Part, TargetStanding, held, is_wish, standings};
 pub use wells::{Asked, WellState, port, resolve};

@@ -7,21 +7,41 @@
 //! Methods: `docs/methods.md`, section 8.
 
 mod balance;
+mod beware;
+mod cold;
 mod decide;
+mod diffusion;
+mod gates;
+mod inflow;
 mod layers;
+mod mixing;
 mod outcome;
+mod outflow;
+mod oxygen;
 mod plan;
+mod reached;
+mod reshape;
 mod run;
 mod skies;
+mod stages;
 mod step;
+mod surface;
 mod tally;
 
 pub use balance::{Balance, Terms};
 pub use decide::{Decision, Why};
+pub use diffusion::{diffuse, diffusivity_m2_s};
+pub use inflow::{Neutral, neutral};
 pub use layers::{Layer, Layers};
-pub use outcome::{ColdDay, ColdWater, Exhausted, GateLife, Outcome, StageDate, Stopping, outcome};
+pub use mixing::{friction_velocity_m_s, mixing_energy_j, wind_work_j_m2};
+pub use outcome::{
+    Asks, ColdDay, ColdWater, Exhausted, GateLife, GateMoves, Left, Outcome, Reached, StageDate, StageFall,
+    Stopping, outcome,
+};
+pub use oxygen::{demand_at, left_mg_l};
 pub use plan::{Plan, PlanDay, RawPlan, RawPlanRow, Schedule};
 pub use run::{Choosing, Ended, Run, SeasonDay, Setup, run};
 pub use skies::{Skies, Sky};
-pub use step::{Forcing, Inflow, Stepped, Unbalanced, day};
+pub use step::{Forcing, Inflow, MOST_OPEN, Stepped, Unbalanced, day};
+pub use surface::{LIGHT_AT_SURFACE, extinction_per_m, light_left};
 pub use tally::{Score, TargetTally, tallies};

@@ -2,10 +2,14 @@
 //!
 //! Methods: `docs/methods.md`, section 8.
 
+mod outages;
+mod rows;
+mod volume;
+
 use chrono::NaiveDate;
 
 use crate::mix::Gate;
-use crate::problem::Problem;
+use crate::problem::{Problem, any_refused};
 use crate::site::{Outage, Site};
 
 /// One row as read, SI.
@@ -13,6 +17,8 @@ use crate::site::{Outage, Site};
 pub struct RawPlanRow {
     /// Line of the file.
     pub line: usize,
+    /// Whether a cell of it could not be read, which is told already.
+    pub unread: bool,
     /// Date.
     pub date: Option<NaiveDate>,
     /// Pool at the end of the day, m.
@@ -40,6 +46,10 @@ pub struct RawPlan {
     pub name: Option<String>,
     /// `# outage: N2, 2026-09-01, 2026-10-15, hoist repair`, each with its line.
     pub outages: Vec<(usize, String)>,
+    /// Whether it has a column of pools.
+    pub by_pool: bool,
+    /// Whether it has a column of releases, which then rules over one of pools.
+    pub by_release: bool,
     /// Rows in the order of the file.
     pub rows: Vec<RawPlanRow>,
 }
@@ -59,10 +69,10 @@ pub struct PlanDay {
     pub inflow_c: f64,
     /// Its oxygen, mg/L; `None`: at saturation.
     pub inflow_mg_l: Option<f64>,
-    /// Its dissolved solids, g/kg.
-    pub inflow_salt_g_per_kg: f64,
-    /// Its suspended solids, mg/L.
-    pub inflow_suspended_mg_l: f64,
+    /// Its dissolved solids, g/kg; `None`: those of the surface of the pool.
+    pub inflow_salt_g_per_kg: Option<f64>,
+    /// Its suspended solids, mg/L; `None`: those of the surface of the pool.
+    pub inflow_suspended_mg_l: Option<f64>,
 }
 
 /// A checked plan: every day between its first and its last row.
@@ -92,7 +102,39 @@ pub struct Schedule {
 impl Plan {
     /// Checks a raw plan against its site. The list holds every refusal, flag and note; `None` when any refuses.
     pub fn check(raw: &RawPlan, site: &Site) -> (Option<Self>, Vec<Problem>) {
-        let _ = (raw, site);
-        (None, Vec::new())
+        let mut problems = Vec::new();
+        let outages = outages::outages(raw, site, &mut problems);
+        rows::rows(raw, site, &mut problems);
+        let days = rows::days(raw);
+        volume::limits(raw, site, &mut problems);
+        if raw.by_release && raw.by_pool && !any_refused(&problems) {
+            volume::follows(raw, &days, site, &mut problems);
+        }
+        problems.sort_by_key(|p| p.place.line.unwrap_or(0));
+        for problem in &mut problems {
+            problem.place.file.get_or_insert_with(|| raw.file.clone());
+        }
+        if any_refused(&problems) || days.is_empty() {
+            return (None, problems);
+        }
+        let plan = Self {
+            name: raw.name.clone().unwrap_or_else(|| stem(&raw.file).to_owned()),
+            file: raw.file.clone(),
+            days,
+            outages,
+            notes: problems.clone(),
+        };
+        (Some(plan), problems)
     }
+
+    /// The first and the last day.
+    pub fn span(&self) -> Option<(NaiveDate, NaiveDate)> {
+        Some((self.days.first()?.date, self.days.last()?.date))
+    }
+}
+
+/// The last part of a path without its ending.
+fn stem(file: &str) -> &str {
+    let base = file.rsplit(['/', '\\']).next().unwrap_or(file);
+    base.rsplit_once('.').map_or(base, |(stem, _)| stem)
 }

@@ -5,10 +5,10 @@
 use std::collections::BTreeMap;
 use std::sync::Arc;
 
-use chrono::NaiveDate;
+use chrono::{Datelike, NaiveDate};
 
 use crate::river::Conditions;
-use crate::site::{Case, Site};
+use crate::site::{Case, Site, Surface, Yearly};
 use crate::weather::{Air, Weather};
 
 /// What the surface trades with on a day.
@@ -42,9 +42,16 @@ pub struct Skies {
     pub from: String,
 }
 
+/// Days beyond the season for which the air is kept: water that leaves on its last day is then still on its way
+/// (choice).
+const AFTER_DAYS: usize = 7;
+
 impl Skies {
     /// The case of a site between two dates, made from the weather of the folder, the months of the site file and the
     /// case's shifts; a reason where a day has no air.
+    ///
+    /// A day of the weather file is its mean; where the file does not tell a day the figures of its month stand for it.
+    /// Where neither tells every day, and the river has a given equilibrium and exchange, those hold on all days.
     ///
     /// # Errors
     /// The first day without air, in words.
@@ -55,11 +62,31 @@ impl Skies {
         from: NaiveDate,
         to: NaiveDate,
     ) -> Result<Self, String> {
-        let _ = (site, conditions, case, from, to);
-        Err(String::new())
+        let base = |date| base(site, conditions, date);
+        let airs: Option<BTreeMap<NaiveDate, Air>> =
+            season(from, to).map(|date| Some((date, shifted(&base(date)?, case)))).collect();
+        if let Some(mut days) = airs {
+            let after = to.iter_days().skip(1).take(AFTER_DAYS);
+            days.extend(after.map_while(|date| Some((date, shifted(&base(date)?, case)))));
+            let told = conditions.weather.days.range(from..=to).next_back().map(|(date, _)| *date);
+            let from = match told {
+                Some(last) if last == to => "the weather file".to_owned(),
+                Some(last) => format!("the weather file to {last}, then the figures of the months"),
+                None => "the figures of the months".to_owned(),
+            };
+            return Ok(Self::under(site, conditions, case.clone(), days, from));
+        }
+        if let Some(Surface::Given { equilibrium_c, exchange_w_m2_c }) =
+            site.river.as_ref().and_then(|river| river.surface.as_ref())
+        {
+            return Ok(Self::given(site, conditions, case, (from, to), equilibrium_c, exchange_w_m2_c));
+        }
+        let missing = season(from, to).find(|date| base(*date).is_none()).unwrap_or(from);
+        Err(format!("nothing tells the air of {missing}: give season.monthly in site.yaml, or more weather"))
     }
 
-    /// One case for each year of a weather record that holds all the days of the season.
+    /// One case for each year of a weather record that holds all the days of the season. A day of a year stands for the
+    /// same day of the season's year, 28 February for a 29th that it lacks.
     pub fn of_years(
         site: &Site,
         conditions: &Conditions,
@@ -67,7 +94,104 @@ impl Skies {
         from: NaiveDate,
         to: NaiveDate,
     ) -> Vec<Self> {
-        let _ = (site, conditions, years, from, to);
-        Vec::new()
+        let (Some((first, _)), Some((last, _))) = (years.days.first_key_value(), years.days.last_key_value())
+        else {
+            return Vec::new();
+        };
+        let of_year = |year: i32| {
+            let of = |date: NaiveDate| {
+                let there = date.year() - from.year() + year;
+                let same = date.with_year(there).or_else(|| NaiveDate::from_ymd_opt(there, 2, 28))?;
+                Some((date, years.day(same)?))
+            };
+            let days = season(from, to).map(of).collect::<Option<BTreeMap<NaiveDate, Air>>>()?;
+            let after = to.iter_days().skip(1).take(AFTER_DAYS).map_while(of);
+            let days = days.into_iter().chain(after).collect();
+            let case = Case { name: year.to_string(), air_c: 0.0, wind: 1.0, inflow: 1.0, inflow_c: 0.0 };
+            let from = format!("the weather of {year}");
+            Some(Self { year: Some(year), ..Self::under(site, conditions, case, days, from) })
+        };
+        (first.year()..=last.year()).filter_map(of_year).collect()
     }
+
+    /// A case under the air of days, for pool and river alike.
+    fn under(
+        site: &Site,
+        conditions: &Conditions,
+        case: Case,
+        airs: BTreeMap<NaiveDate, Air>,
+        from: String,
+    ) -> Self {
+        let mut site = site.clone();
+        if let Some(river) = &mut site.river
+            && !matches!(river.surface, Some(Surface::File(_)))
+        {
+            river.surface = Some(Surface::File(from.clone()));
+        }
+        let days = airs.iter().map(|(date, air)| (*date, Sky::Air(*air))).collect();
+        let weather = Weather { days: airs, ..Weather::default() };
+        Self { case, year: None, days, site: Arc::new(site), conditions: ahead(conditions, weather), from }
+    }
+
+    /// A case under the given equilibrium of the river, shifted.
+    fn given(
+        site: &Site,
+        conditions: &Conditions,
+        case: &Case,
+        (from, to): (NaiveDate, NaiveDate),
+        equilibrium_c: &Yearly,
+        exchange_w_m2_c: &Yearly,
+    ) -> Self {
+        let mut site = site.clone();
+        let equilibrium_c = Yearly::Monthly(std::array::from_fn(|i| {
+            // no ice is computed
+            (equilibrium_c.in_month(i as u32 + 1) + case.air_c).max(0.0)
+        }));
+        let sky = |date: NaiveDate| Sky::Given {
+            equilibrium_c: equilibrium_c.in_month(date.month()),
+            exchange_w_m2_c: exchange_w_m2_c.in_month(date.month()),
+        };
+        let days = season(from, to).map(|date| (date, sky(date))).collect();
+        if let Some(river) = &mut site.river {
+            let exchange_w_m2_c = exchange_w_m2_c.clone();
+            river.surface = Some(Surface::Given { equilibrium_c, exchange_w_m2_c });
+        }
+        Self {
+            case: case.clone(),
+            year: None,
+            days,
+            site: Arc::new(site),
+            conditions: ahead(conditions, Weather::default()),
+            from: "the equilibrium and exchange given for the river".to_owned(),
+        }
+    }
+}
+
+fn season(from: NaiveDate, to: NaiveDate) -> impl Iterator<Item = NaiveDate> {
+    from.iter_days().take_while(move |date| *date <= to)
+}
+
+/// The air of a day before any shift.
+fn base(site: &Site, conditions: &Conditions, date: NaiveDate) -> Option<Air> {
+    let months = site.season.monthly.as_deref().or_else(|| match &site.river.as_ref()?.surface {
+        Some(Surface::Monthly(airs)) => Some(airs),
+        _ => None,
+    });
+    let month = || months.and_then(|airs| airs.get(date.month0() as usize)).copied();
+    conditions.weather.day(date).or_else(month)
+}
+
+/// An air under the shifts of a case: the dew point goes with the air, so that its humidity stays about the same.
+fn shifted(air: &Air, case: &Case) -> Air {
+    Air {
+        temperature_c: air.temperature_c + case.air_c,
+        dew_point_c: air.dew_point_c + case.air_c,
+        wind_m_s: air.wind_m_s * case.wind,
+        ..*air
+    }
+}
+
+/// What is known of days to come: the weather of the case, what streams tell, and no record.
+fn ahead(conditions: &Conditions, weather: Weather) -> Arc<Conditions> {
+    Arc::new(Conditions { weather, streams: conditions.streams.clone(), observed: BTreeMap::new() })
 }

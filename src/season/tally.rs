@@ -20,6 +20,14 @@ pub struct TargetTally {
     pub oxygen: Option<Tally>,
 }
 
+impl TargetTally {
+    /// Days on which it is outside by its temperature, or by its oxygen where that is more.
+    pub fn days_outside(&self) -> u32 {
+        let days = |t: &Option<Tally>| t.as_ref().map_or(0, |t| t.over + t.under);
+        days(&self.temperature).max(days(&self.oxygen))
+    }
+}
+
 /// What a strategy is measured by, in this order: the smaller the better.
 #[derive(Debug, Clone, Copy, Default, PartialEq)]
 pub struct Score {

@@ -106,7 +106,7 @@ impl Folder {
     }
 
     /// A file of the folder, where it is there.
-    fn beside(&self, name: &str) -> Option<Result<Source, Problem>> {
+    pub(super) fn beside(&self, name: &str) -> Option<Result<Source, Problem>> {
         if !stays_within(name) {
             return None;
         }

@@ -7,7 +7,8 @@ use std::time::SystemTime;
 use crate::files::text::YAML_CAP;
 
 use super::around::{TAILWATER, stays_within};
-use super::{SITE_FILE, cast_paths, demonstrations, is_csv, places};
+use super::plans::PLANS;
+use super::{PROFILES, SITE_FILE, csv_paths, demonstrations, is_csv, places};
 
 /// A site among others.
 #[derive(Debug, Clone, PartialEq, Eq)]
@@ -39,7 +40,7 @@ pub fn sites_in(path: &Path) -> Vec<Found> {
 pub type Stamps = Vec<(PathBuf, SystemTime, u64)>;
 
 /// When each file that an answer on a site can come from was last written, and its length in bytes: the site file,
-/// sound or not, every cast of the folder, the tailwater record, and what else the site file names. Two lists differ where a file changed, came or went. Empty for a
+/// sound or not, every cast and every plan of the folder, the tailwater record, and what else the site file names. Two lists differ where a file changed, came or went. Empty for a
 /// demonstration held in memory.
 pub fn stamps(named: &str) -> Stamps {
     let path = Path::new(named);
@@ -50,7 +51,8 @@ pub fn stamps(named: &str) -> Stamps {
     let named = named_in(&file).into_iter().map(|name| root.join(name));
     [file]
         .into_iter()
-        .chain(cast_paths(&root))
+        .chain(csv_paths(&root, PROFILES))
+        .chain(csv_paths(&root, PLANS))
         .chain(named)
         .filter_map(|path| {
             let about = fs::metadata(&path).ok()?;

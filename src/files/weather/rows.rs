@@ -11,7 +11,7 @@ use crate::units::say;
 use crate::weather::believed::DEW_ABOVE_C;
 use crate::weather::{Air, Stand, Weather, sun};
 
-use super::super::cast::{SENTINELS, TIME_CURE, parse_time};
+use super::super::cast::{SENTINELS, TIME_CURE, parse_date, parse_time};
 use super::super::table::{MOST_PROBLEMS, Table};
 use super::columns::{Column, Row};
 
@@ -169,15 +169,11 @@ fn dated(table: &Table, columns: &[Option<Column>], site: &Site, problems: &mut 
 }
 
 fn moment(text: &str, column: Column, offset: FixedOffset) -> Result<DateTime<FixedOffset>, Problem> {
-    if column == Column::Time {
-        return parse_time(text, offset).map_err(|words| Problem::refused("time", words, TIME_CURE));
+    if column == Column::Date {
+        parse_date(text)?;
     }
     // a date alone counts as its noon
-    let date = NaiveDate::parse_from_str(text.trim(), "%Y-%m-%d").ok();
-    date.and_then(|_| parse_time(text, offset).ok()).ok_or_else(|| {
-        let short: String = text.chars().take(40).collect();
-        Problem::refused("time", format!("`{short}` is not a date of our days"), "write 2025-07-14")
-    })
+    parse_time(text, offset).map_err(|words| Problem::refused("time", words, TIME_CURE))
 }
 
 /// Where the sun of a moment stands. Without a longitude, it is highest at 12:00 of the site's clock.

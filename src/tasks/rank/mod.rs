@@ -181,7 +181,11 @@ pub fn rank(
 }
 
 /// The setting now, as typed or else as the site file gives it; what was assumed, or why there is none, becomes a note.
-fn now(context: &Context, typed: &[String], notes: &mut Vec<Problem>) -> Result<Option<Setting>, Failure> {
+pub(super) fn now(
+    context: &Context,
+    typed: &[String],
+    notes: &mut Vec<Problem>,
+) -> Result<Option<Setting>, Failure> {
     let understood = if typed.is_empty() {
         match now_setting(context) {
             Ok(understood) => understood,

@@ -1,0 +1,149 @@
+//! What a folder holds for the season ahead: plans, gate schedules, weather of years.
+
+use std::path::Path;
+use std::sync::Arc;
+
+use crate::files::plan::plan;
+use crate::files::schedule::schedule;
+use crate::files::text::{self, Format, Source};
+use crate::files::weather::weather;
+use crate::problem::Problem;
+use crate::season::{Plan, Schedule};
+use crate::weather::Weather;
+
+use super::{Folder, base};
+
+/// Where the plans of a site are.
+pub(super) const PLANS: &str = "plans";
+/// Where its gate schedules are.
+const SCHEDULES: &str = "schedules";
+
+/// One plan of the folder: its file, the plan if it can be used, and everything said of it.
+#[derive(Debug, Clone)]
+pub struct ListedPlan {
+    /// File as shown.
+    pub file: String,
+    /// The plan; `None` where it is refused.
+    pub plan: Option<Arc<Plan>>,
+    /// Problems, flags and notes.
+    pub problems: Vec<Problem>,
+    /// The bytes it came from.
+    pub source: Option<Source>,
+}
+
+/// A gate schedule as read.
+#[derive(Debug, Clone)]
+pub struct ReadSchedule {
+    /// The schedule; `None` where it is refused.
+    pub schedule: Option<Arc<Schedule>>,
+    /// Problems, flags and notes.
+    pub problems: Vec<Problem>,
+    /// The bytes it came from.
+    pub source: Source,
+}
+
+/// Weather of several years, as the site file names it.
+#[derive(Debug, Clone)]
+pub struct Years {
+    /// The weather; `None` where its file is not there or is refused.
+    pub weather: Option<Arc<Weather>>,
+    /// Problems, flags and notes.
+    pub problems: Vec<Problem>,
+    /// The bytes it came from.
+    pub source: Option<Source>,
+}
+
+impl ListedPlan {
+    fn of(folder: &Folder, file: String, source: Result<Source, Problem>) -> Self {
+        match source {
+            Err(problem) => Self { file, plan: None, problems: vec![problem], source: None },
+            Ok(source) => {
+                let (plan, problems) = plan(&source, &folder.site);
+                Self { file, plan: plan.map(Arc::new), problems, source: Some(source) }
+            }
+        }
+    }
+
+    /// Whether it goes by a name: its file with or without its ending, or the name it gives itself.
+    fn is_named(&self, name: &str) -> bool {
+        let base = base(&self.file);
+        let stem = base.rsplit_once('.').map_or(base, |(stem, _)| stem);
+        [self.file.as_str(), base, stem].contains(&name)
+            || self.plan.as_ref().is_some_and(|plan| plan.name == name)
+    }
+}
+
+impl Folder {
+    /// Every plan of the folder, ordered by file name; they are read once, as the casts are.
+    pub fn plans(&self) -> &[ListedPlan] {
+        self.plans.get_or_init(|| {
+            let sources = self.csv_sources(PLANS, |_| true);
+            sources.into_iter().map(|(file, source)| ListedPlan::of(self, file, source)).collect()
+        })
+    }
+
+    /// A plan: one of the folder by its file, with or without its ending, or by its own name; else a file at a path.
+    ///
+    /// # Errors
+    /// There is none; the cure names those there are.
+    pub fn plan(&self, named: &str) -> Result<ListedPlan, Problem> {
+        if let Some(listed) = self.plans().iter().find(|listed| listed.is_named(named)) {
+            return Ok(listed.clone());
+        }
+        if Path::new(named).is_file() {
+            let source = text::read(Path::new(named), Format::Csv);
+            return Ok(ListedPlan::of(self, named.to_owned(), source));
+        }
+        let known: Vec<String> = self.plans().iter().map(|listed| base(&listed.file).to_owned()).collect();
+        Err(unknown("plan", named, PLANS, &known))
+    }
+
+    /// A gate schedule: one of the folder `schedules` by its file, with or without its ending, else a file at a path.
+    ///
+    /// # Errors
+    /// There is none, or it is no text.
+    pub fn schedule(&self, named: &str) -> Result<ReadSchedule, Problem> {
+        let is_named = |file: &str| base(file) == named || base(file) == format!("{named}.csv");
+        let source = match self.csv_sources(SCHEDULES, is_named).pop() {
+            Some((_, source)) => source?,
+            None if Path::new(named).is_file() => text::read(Path::new(named), Format::Csv)?,
+            None => {
+                let all = self.csv_sources(SCHEDULES, |_| true);
+                let known: Vec<String> = all.iter().map(|(file, _)| base(file).to_owned()).collect();
+                return Err(unknown("gate schedule", named, SCHEDULES, &known));
+            }
+        };
+        let (schedule, problems) = schedule(&source, &self.site);
+        Ok(ReadSchedule { schedule: schedule.map(Arc::new), problems, source })
+    }
+
+    /// The weather of several years that the site file names; `None` where it names none. It is read once.
+    pub fn years(&self) -> Option<&Years> {
+        let name = self.site.season.years.as_deref()?;
+        Some(self.years.get_or_init(|| {
+            let missing = || {
+                let words = format!("there is no file `{name}` in the folder of the site");
+                let cure =
+                    "correct the name, or take it out; a file lies in the folder of site.yaml or below it";
+                self.located(Problem::refused("file-missing", words, cure).at("season.years"))
+            };
+            match self.beside(name).unwrap_or_else(|| Err(missing())) {
+                Err(problem) => Years { weather: None, problems: vec![problem], source: None },
+                Ok(source) => {
+                    let (read, problems) = weather(&source, &self.site);
+                    Years { weather: read.map(Arc::new), problems, source: Some(source) }
+                }
+            }
+        }))
+    }
+}
+
+fn unknown(what: &str, named: &str, folder: &str, known: &[String]) -> Problem {
+    let short: String = named.chars().take(60).collect();
+    let cure = if known.is_empty() {
+        format!("put one into the folder `{folder}` of the site, or give the path of a file")
+    } else {
+        format!("there are {}; or give the path of a file", known.join(", "))
+    };
+    Problem::refused("unknown-name", format!("no {what} is named `{short}`"), cure)
+}
