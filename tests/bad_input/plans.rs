@@ -62,11 +62,29 @@ fn scenario_a_plan_by_the_pool_is_laid_out_by_days() {
 #[test]
 fn scenario_the_error_of_the_plan_is_on_its_line_with_its_cure() {
     let cases = [
-        ("2026-08-11,15,10,20", "2026-07-30,15,10,20", "plan-order", 6, "2026-07-30 comes after 2026-08-01 of line 5"),
-        ("2026-08-11,15,10,20", "2026-08-01,15,10,20", "plan-order", 6, "2026-08-01 stands on line 5 already"),
+        (
+            "2026-08-11,15,10,20",
+            "2026-07-30,15,10,20",
+            "plan-order",
+            6,
+            "2026-07-30 comes after 2026-08-01 of line 5",
+        ),
+        (
+            "2026-08-11,15,10,20",
+            "2026-08-01,15,10,20",
+            "plan-order",
+            6,
+            "2026-08-01 stands on line 5 already",
+        ),
         ("2026-08-21,14,", "2026-08-21,21.5,", "outside-pool", 7, "pool 21.50 m lies 1.50 m above the table"),
         ("2026-08-21,14,", "2026-08-21,-1,", "outside-pool", 7, "1.00 m below the bed"),
-        ("2026-08-21,14,", "2026-08-21,8,", "plan-drawdown", 7, "0.200 m more than limits.max_drawdown_per_day"),
+        (
+            "2026-08-21,14,",
+            "2026-08-21,8,",
+            "plan-drawdown",
+            7,
+            "0.200 m more than limits.max_drawdown_per_day",
+        ),
         ("2026-08-11,15,10,20", "2026-08-11,,10,20", "plan-missing", 6, "tells no pool"),
         ("2026-08-11,15,10,20", "2026-08-11,15,,20", "plan-missing", 6, "tells no inflow"),
         ("2026-08-11,15,10,20", "2026-08-11,15,10,", "plan-missing", 6, "tells no inflow temperature"),
@@ -74,7 +92,13 @@ fn scenario_the_error_of_the_plan_is_on_its_line_with_its_cure() {
         ("2026-08-11,15,10,20", "2026-08-11,15,-999,20", "not-a-number", 6, "no cell such as -999"),
         ("2026-08-11,15,10,20", "2026-08-32,15,10,20", "time", 6, "`2026-08-32` is not a date"),
         ("2026-08-11,15,10,20", "2026-08-11,15,-3,20", "plan-range", 6, "no inflow is -3.00 m3/s"),
-        ("2026-08-11,15,10,20", "2026-08-11,15,10,70", "plan-range", 6, "inflow of 70.0 C lies outside 0 C to 40 C"),
+        (
+            "2026-08-11,15,10,20",
+            "2026-08-11,15,10,70",
+            "plan-range",
+            6,
+            "inflow of 70.0 C lies outside 0 C to 40 C",
+        ),
         (",inflow_m3s,", ",inflow,", "no-column", 4, "no column tells the inflow"),
         (",inflow_temperature_C", ",inflow_temperature", "no-column", 4, "no column tells the temperature"),
         (",pool_m,", ",pool,", "no-column", 4, "no column tells the pool or the release"),
@@ -83,7 +107,13 @@ fn scenario_the_error_of_the_plan_is_on_its_line_with_its_cure() {
         ("2026-08-05,", "August,", "day", 2, "`August` is not a date"),
         ("2026-08-09,", "2026-08-01,", "day-order", 2, "ends before it begins"),
         ("# outage: A, 2026-09-01, , no end", "# outage: B, 2026-08-05", "listed-twice", 3, "already listed"),
-        ("# outage: A, 2026-09-01, , no end", "# name: another", "said-twice", 3, "`# name` says another thing"),
+        (
+            "# outage: A, 2026-09-01, , no end",
+            "# name: another",
+            "said-twice",
+            3,
+            "`# name` says another thing",
+        ),
         ("date,", "day,", "no-header", 0, "no line names a date"),
         ("2026-08-21", "2036-08-21", "plan-long", 0, "1100 days are the most"),
     ];
@@ -115,7 +145,10 @@ fn scenario_a_volume_that_cannot_follow_names_both_rows_and_by_how_much() {
         let [found] = found.as_slice() else { panic!("{:#?}", said(&problems)) };
         assert_eq!(found.place.line, Some(7));
         let text = found.to_string();
-        assert!(text.contains("from 2026-08-11 (line 6) to 2026-08-21 the volume asks for a mean release of"), "{text}");
+        assert!(
+            text.contains("from 2026-08-11 (line 6) to 2026-08-21 the volume asks for a mean release of"),
+            "{text}"
+        );
         assert!(text.contains(words) && text.contains(cure), "{text}");
     }
 }
@@ -158,7 +191,8 @@ fn scenario_a_plan_by_the_release_holds_it_and_says_where_its_pool_does_not_foll
     ] {
         let (plan, problems) = read(&text.replacen("21,574074", to, 1));
         assert!(plan.is_none(), "{to}");
-        let found = problems.iter().find(|p| p.kind == kind).unwrap_or_else(|| panic!("{:#?}", said(&problems)));
+        let found =
+            problems.iter().find(|p| p.kind == kind).unwrap_or_else(|| panic!("{:#?}", said(&problems)));
         assert!(found.place.line == Some(3) && found.to_string().contains(words), "{found}");
     }
 }
