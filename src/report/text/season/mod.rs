@@ -22,7 +22,7 @@ pub use calendar::{gates, moves, reach};
 pub use cold::{cold, left};
 pub use first::{exhausted, out_of_reach, reserve, targets};
 pub use rest::rest;
-pub use side::{HEADS, Row, side};
+pub use side::{HEADS, Row, columns, meaning, side};
 
 /// Everything but head and caution.
 pub(super) fn body(context: &Context, answer: &SeasonAnswer) -> String {

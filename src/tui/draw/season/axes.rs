@@ -14,7 +14,7 @@ use crate::units::{Dimension, System};
 use super::SeasonPicture;
 
 /// Least and most columns left of the plot, the axis counted in.
-const SIDE: (usize, usize) = (11, 18);
+const SIDE: (usize, usize) = (12, 18);
 /// Least columns and rows there can be a picture in.
 const LEAST: (usize, usize) = (36, 10);
 /// Rows from which every part has its title, and gates rows of their own.
@@ -25,6 +25,8 @@ const GATES: usize = 8;
 pub(super) const BANDS: u32 = 6;
 /// Days of a season so short that weeks are marked instead of months.
 const SHORT: usize = 45;
+/// A threshold this near to an edge of a band, in bands, takes its place.
+const TOUCHES: f64 = 0.2;
 /// Least rows of curves.
 const CURVE: usize = 3;
 
@@ -122,7 +124,11 @@ impl Frame {
         }
         if let Some(day) = picture.cursor.filter(|d| *d < self.days) {
             let col = self.side + self.col_of(day);
-            (1..self.axis).for_each(|row| pen.fill(col, row, if ascii { "|" } else { "│" }, Role::Strong));
+            let parts =
+                [Some(self.water), Some(self.release), self.cold, Some((self.moves, 2 + self.gates.1))];
+            for row in parts.into_iter().flatten().flat_map(|(from, rows)| from..from + rows) {
+                pen.fill(col, row, if ascii { "|" } else { "│" }, Role::Strong);
+            }
             pen.put(col, self.axis, "^", Role::Chosen);
         }
     }
@@ -138,13 +144,30 @@ fn col_of(day: usize, cols: usize, days: usize) -> usize {
     ((2 * day + 1) * cols / (2 * days.max(1))).min(cols.saturating_sub(1))
 }
 
-/// Edges of the bands of a picture, rising, in the unit shown: round, and no more bands than can be told apart.
-pub fn bands(span: (f64, f64), dimension: Dimension, system: System) -> Vec<f64> {
+/// Edges of the bands of a picture, rising, in the unit shown: round, and no more bands than can be told apart. A
+/// threshold inside becomes an edge of its own, in place of one it would all but touch.
+pub(super) fn bands(
+    span: (f64, f64),
+    threshold: Option<f64>,
+    dimension: Dimension,
+    system: System,
+) -> Vec<f64> {
     let unit = system.unit(dimension);
     let (low, high) = (unit.from_si(span.0), unit.from_si(span.1));
     // water of one value fills one band
     let high = if high > low { high } else { low + 1.0 };
-    ticks(low, high, BANDS)
+    let mut edges = ticks(low, high, BANDS - 1);
+    let (Some(first), Some(last)) = (edges.first().copied(), edges.last().copied()) else {
+        return vec![low, high];
+    };
+    let step = (last - first) / (edges.len() - 1).max(1) as f64;
+    if let Some(at) = threshold.map(|v| unit.from_si(v)).filter(|at| first < *at && *at < last) {
+        let ends = |edge: f64| edge <= first || edge >= last;
+        edges.retain(|edge| ends(*edge) || (edge - at).abs() > TOUCHES * step);
+        edges.push(at);
+        edges.sort_by(f64::total_cmp);
+    }
+    edges
 }
 
 /// How a value is counted on an axis and the name of that: volumes in thousands or millions where they are large.
@@ -200,14 +223,18 @@ mod tests {
 
     #[test]
     fn scenario_bands_are_round_and_few() {
-        let c = |low, high| bands((low, high), Dimension::Temperature, System::Si);
-        assert_eq!(c(4.2, 23.8), [0.0, 5.0, 10.0, 15.0, 20.0, 25.0]);
-        assert_eq!(c(7.0, 7.0).first(), Some(&7.0));
-        let f = bands((5.0, 24.0), Dimension::Temperature, System::Us);
+        let c = |low, high, at| bands((low, high), at, Dimension::Temperature, System::Si);
+        assert_eq!(c(4.2, 23.8, None), [0.0, 5.0, 10.0, 15.0, 20.0, 25.0]);
+        assert_eq!(c(4.2, 23.8, Some(12.0)), [0.0, 5.0, 10.0, 12.0, 15.0, 20.0, 25.0]);
+        assert_eq!(c(4.2, 23.8, Some(10.5)), [0.0, 5.0, 10.5, 15.0, 20.0, 25.0]);
+        assert_eq!(c(4.2, 23.8, Some(0.1)), [0.0, 0.1, 5.0, 10.0, 15.0, 20.0, 25.0]);
+        assert_eq!(c(7.0, 7.0, Some(30.0)).first(), Some(&7.0));
+        let f = bands((5.0, 24.0), None, Dimension::Temperature, System::Us);
         assert_eq!(f, [40.0, 50.0, 60.0, 70.0, 80.0]);
         for k in 1..60 {
-            let bands = c(3.3, 3.3 + 0.7 * f64::from(k));
+            let bands = c(3.3, 3.3 + 0.7 * f64::from(k), Some(5.1));
             assert!(bands.len() <= BANDS as usize + 1 && bands.len() >= 2, "{bands:?}");
+            assert!(bands.is_sorted(), "{bands:?}");
         }
     }
 

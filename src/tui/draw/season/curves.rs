@@ -2,12 +2,12 @@
 //!
 //! Figures of the layout are choices.
 
-use crate::plot::{Dots, Grain, Scale};
+use crate::plot::{Dots, Grain, Scale, Stroke};
 use crate::tui::draw::pen::{Pen, cut};
 use crate::tui::{Look, Role, Symbols};
 
 use super::axes::{Frame, Rows, counted, scale, steps};
-use super::{CurvesThrough, SeasonPicture};
+use super::{CurvesThrough, LineThrough, SeasonPicture};
 
 pub(super) fn draw(
     picture: &SeasonPicture,
@@ -64,14 +64,14 @@ fn side(
     (top..top + rows).for_each(|row| pen.put(end, row, line, Role::Quiet));
     let marks = y.marks(steps(rows));
     let decimals = usize::from(marks.decimals);
+    let wide = marks.values.iter().map(|v| format!("{v:.decimals$}").len() + 1).max().unwrap_or(0);
     for value in marks.values {
         let row = top + rows - 1 - y.cell(value, rows).unwrap_or(0);
         pen.put_before(end, row, &format!("{value:.decimals$} "), Role::Quiet);
         pen.put(end, row, tick, Role::Quiet);
     }
     if !frame.titles {
-        // the widest number keeps its room
-        let room = end.saturating_sub(5);
+        let room = end.saturating_sub(wide + 1);
         pen.put(0, top, &cut(&curves.name, room), Role::Strong);
         if rows > 2 {
             pen.put(0, top + 1, &cut(counted, room), Role::Quiet);
@@ -84,17 +84,13 @@ fn title(curves: &CurvesThrough, counted: &str, row: usize, frame: &Frame, pen: 
     let text = format!("{}, {counted}", curves.name);
     pen.put(0, row, &text, Role::Strong);
     let mut col = text.chars().count() + 3;
-    let grain = |mark: &'static str, name: &str| match (ascii, name) {
-        (true, _) => mark,
-        (false, _) => mark_words(mark),
-    };
     let shade = if ascii { ":" } else { "░" };
     let mut entries: Vec<(&str, &str, Role)> =
-        curves.lines.iter().rev().map(|l| (grain(l.mark, &l.name), l.name.as_str(), l.role)).collect();
+        curves.lines.iter().rev().map(|l| (sign(l, ascii), l.name.as_str(), l.role)).collect();
     if curves.shaded.1.iter().any(Option::is_some) {
         entries.push((shade, &curves.shaded.0, Role::Quiet));
     }
-    for (glyph, word, role) in entries {
+    for (glyph, word, role) in entries.into_iter().filter(|e| !e.1.is_empty()) {
         let wide = word.chars().count() + 4;
         if col + wide > frame.side + frame.cols {
             return;
@@ -105,11 +101,12 @@ fn title(curves: &CurvesThrough, counted: &str, row: usize, frame: &Frame, pen: 
     }
 }
 
-/// What a curve looks like where it is drawn with dots, by its plain character.
-fn mark_words(mark: &'static str) -> &'static str {
-    match mark {
-        "*" => "━",
-        "-" => "┄",
-        _ => "─",
+/// What a curve looks like.
+fn sign(line: &LineThrough, ascii: bool) -> &'static str {
+    match (ascii, line.stroke) {
+        (true, _) => line.mark,
+        (false, Stroke::Heavy) => "━",
+        (false, Stroke::Dotted) => "┄",
+        (false, Stroke::Thin) => "─",
     }
 }

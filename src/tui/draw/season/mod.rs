@@ -17,8 +17,6 @@ use crate::units::{Dimension, System};
 
 use super::pen::Pen;
 
-pub use axes::bands;
-
 /// What the picture shows. Days count from 0.
 #[derive(Debug, Clone, PartialEq)]
 pub struct SeasonPicture {
@@ -51,6 +49,8 @@ pub struct WaterThrough {
     pub dimension: Dimension,
     /// Least and greatest value of all that is to be compared, SI.
     pub span: (f64, f64),
+    /// A value that parts two bands, SI: the threshold of cold water, a floor of oxygen.
+    pub threshold: Option<f64>,
     /// Lowest and highest elevation, m.
     pub elevations_m: (f64, f64),
     /// By day.

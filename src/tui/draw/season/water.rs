@@ -5,7 +5,7 @@
 use unicode_width::UnicodeWidthStr;
 
 use crate::plot::{Scale, on_rows};
-use crate::tui::draw::pen::{Pen, cut, decimals};
+use crate::tui::draw::pen::{Pen, cut};
 use crate::tui::{Look, Role, Symbols};
 
 use super::axes::{Frame, bands};
@@ -53,7 +53,7 @@ pub(super) fn draw(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: 
     let (top, rows) = frame.water;
     let Some(scale) = Scale::new(water.elevations_m.0, water.elevations_m.1) else { return };
     let marks = marks(look);
-    let edges = bands(water.span, water.dimension, picture.system);
+    let edges = bands(water.span, water.threshold, water.dimension, picture.system);
     let unit = picture.system.unit(water.dimension);
     let row_of = |elevation_m: f64| top + rows - 1 - scale.cell(elevation_m, rows).unwrap_or(0);
     for col in 0..frame.cols {
@@ -70,11 +70,12 @@ pub(super) fn draw(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: 
             pen.put(frame.side + col, top + row, glyph, role);
         }
         if let Some(surface_m) = surface_m {
-            pen.fill(frame.side + col, row_of(surface_m), marks.surface, Role::Plain);
-            // where the water fills the row of its surface, the one over it shows where it ends
-            if row_of(surface_m) > top {
-                pen.fill(frame.side + col, row_of(surface_m) - 1, marks.surface, Role::Plain);
-            }
+            // over the cells that show water
+            let middle = |row: usize| scale.value(1.0 - ((row - top) as f64 + 0.5) / rows as f64);
+            let row = row_of(surface_m);
+            let row =
+                if middle(row) <= surface_m { row.checked_sub(1).filter(|r| *r >= top) } else { Some(row) };
+            row.into_iter().for_each(|row| pen.fill(frame.side + col, row, marks.surface, Role::Plain));
         }
         if let Some(elevation_m) = day.thermocline_m {
             pen.put(frame.side + col, row_of(elevation_m), marks.thermocline, Role::Strong);
@@ -167,12 +168,13 @@ fn side(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: Look, row_o
 /// The bands with their values, then what the marks mean as far as there is room.
 fn legend(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, marks: &Marks, edges: &[f64]) {
     let unit = picture.system.unit(picture.water.dimension);
-    let decimals = decimals(edges);
+    // a threshold may not be round
+    let edge = |v: f64| if (v - v.round()).abs() < 0.05 { format!("{v:.0}") } else { format!("{v:.1}") };
     let mut col = 0;
     for (i, pair) in edges.windows(2).enumerate() {
         let (Some(glyph), [low, high]) = (marks.fill.get(i), pair) else { continue };
         pen.put(col, 0, &glyph.repeat(2), Role::Band(i));
-        let text = format!("{low:.decimals$}-{high:.decimals$}");
+        let text = format!("{}-{}", edge(*low), edge(*high));
         pen.put(col + 3, 0, &text, Role::Quiet);
         col += text.width() + 5;
     }
