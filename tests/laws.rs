@@ -26,6 +26,8 @@ mod season;
 mod series;
 #[path = "laws/shape.rs"]
 mod shape;
+#[path = "laws/skies.rs"]
+mod skies;
 #[path = "laws/weather.rs"]
 mod weather;
 #[path = "laws/wells/mod.rs"]

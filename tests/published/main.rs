@@ -7,6 +7,7 @@ mod gas;
 mod layering;
 mod mix;
 mod observed;
+mod outcome;
 mod pool;
 mod rejected;
 mod river;
