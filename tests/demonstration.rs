@@ -71,6 +71,13 @@ fn unchanged_sorrel_files_match_their_generator() {
     held("sorrel", &made);
 }
 
+/// The same of the third site.
+#[test]
+fn unchanged_tessel_casts_match_their_generator() {
+    let text = std::fs::read_to_string(folder("tessel").join("site.yaml")).unwrap();
+    held("tessel", &demo::tessel::files(&text));
+}
+
 /// The kinds of fault a careful reader would find in a cast, each once.
 fn faults(cast: &Cast) -> Vec<&'static str> {
     let mut found = Vec::new();

@@ -9,7 +9,7 @@ use crate::files::atomic;
 use crate::files::folder::{demonstration_files, demonstrations};
 use crate::mix::TargetStanding;
 use crate::problem::{Problem, any_refused, harmless};
-use crate::report::{json, text};
+use crate::report::{self, json, text};
 use crate::tasks::rank::RankAsked;
 use crate::tasks::{self, Asked, Failure};
 use crate::tui;
@@ -84,6 +84,19 @@ pub(super) fn answer(cli: &Cli, clock: DateTime<Utc>, progress: Progress) -> Res
             };
             let missed = answer.spoken().is_none_or(|way| way.targets.iter().any(TargetStanding::missed));
             (shown, strictly(*strict, missed))
+        }
+        Some(Command::Season { common, asked, csv, strict }) => {
+            let context = tasks::open(&common.asked(), clock)?;
+            let answer = tasks::season::season(&context, &asked.asked(), &|done| progress.tell(done))?;
+            drop(progress);
+            let shown = if common.json {
+                json::season(&context, &answer)
+            } else if *csv {
+                report::csv::season(&context, &answer)
+            } else {
+                common.color.of(&text::season(&context, &answer))
+            };
+            (shown, strictly(*strict, answer.main.missed()))
         }
         Some(Command::Check { site, json }) => {
             let (problems, system) = tasks::check(site);

@@ -5,6 +5,7 @@ use std::path::PathBuf;
 use clap::{Args, Parser, Subcommand, ValueEnum};
 
 use crate::tasks::rank::RankAsked;
+use crate::tasks::season::SeasonAsked;
 use crate::tasks::{Asked, Word};
 use crate::units::System;
 
@@ -60,6 +61,19 @@ pub(super) enum Command {
         #[arg(long, value_name = "FLOW")]
         release: Option<String>,
         /// Exit with 4 when a target is missed.
+        #[arg(long)]
+        strict: bool,
+    },
+    /// What does it cost later: the season ahead under a plan?
+    Season {
+        #[command(flatten)]
+        common: Common,
+        #[command(flatten)]
+        asked: Ahead,
+        /// As a table for a spreadsheet, a row a day, in the units shown.
+        #[arg(long, conflicts_with = "json")]
+        csv: bool,
+        /// Exit with 4 when a day lies outside a hard target, or the season stops before its plan.
         #[arg(long)]
         strict: bool,
     },
@@ -206,6 +220,42 @@ impl Ranked {
             order: self.order.clone(),
             top: usize::from(self.top),
             without: self.without.clone(),
+        }
+    }
+}
+
+#[derive(Debug, Args)]
+pub(super) struct Ahead {
+    /// Plan: a file of `plans`, its name, or a path; without it the first by file name.
+    #[arg(long, value_name = "FILE|NAME")]
+    plan: Option<String>,
+    /// Case of weather and inflow, by its name or year; without it the middle one.
+    #[arg(long, value_name = "NAME")]
+    case: Option<String>,
+    /// How gates are chosen: hold, best or thrift; without it as the site file says.
+    #[arg(long, value_name = "NAME")]
+    strategy: Option<String>,
+    /// A file of dates and gate flows to follow, instead of a strategy.
+    #[arg(long, value_name = "FILE")]
+    schedule: Option<String>,
+    /// Days between decisions; without it as the site file says.
+    #[arg(long, value_name = "DAYS")]
+    every: Option<String>,
+    /// A gate as it stands now, such as N1=30, N1=50% or the name of a position; repeat for each. Without any, as
+    /// the site file says.
+    #[arg(long, value_name = "GATE=FLOW|GATE=OPENING")]
+    now: Vec<String>,
+}
+
+impl Ahead {
+    pub(super) fn asked(&self) -> SeasonAsked {
+        SeasonAsked {
+            plan: self.plan.clone(),
+            case: self.case.clone(),
+            strategy: self.strategy.clone(),
+            schedule: self.schedule.clone(),
+            every: self.every.clone(),
+            now: self.now.clone(),
         }
     }
 }

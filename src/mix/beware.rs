@@ -26,7 +26,7 @@ const THIN_HEIGHTS: f64 = 2.0;
 /// hundredth of a degree makes of cold water (choice).
 const MIXED_KG_M3_M: f64 = 3e-4;
 /// More of the release than this from water below 1 mg/L makes the oxygen an upper bound (choice).
-const LOW_OXYGEN_SHARE: f64 = 0.05;
+pub const LOW_OXYGEN_SHARE: f64 = 0.05;
 /// Rotation of the Earth, rad/s (standard).
 const EARTH_RAD_S: f64 = 7.292_115e-5;
 

@@ -12,7 +12,7 @@ use super::samples::{OxygenSample, Sample};
 /// Gradients are taken over at least this height, m: closer samples would make noise the thermocline (choice).
 const GRADIENT_M: f64 = 1.0;
 /// No thermocline where top and bottom differ by less, C (common practice, no source).
-const LAYERED_C: f64 = 1.0;
+pub const LAYERED_C: f64 = 1.0;
 /// Steepness of the thermocline band, C per m (Birge's rule, recalled).
 const BAND_C_M: f64 = 1.0;
 /// The surface mixed layer ends where density exceeds the surface's by this, kg/m3 (choice).

@@ -17,8 +17,8 @@ mod stretch;
 pub use cast::Profile;
 pub use column::{Column, OXYGEN_LOW_MG_L, Reading, Source, Widths};
 pub use layering::{
-    Layering, Thermocline, buoyancy_s2, colder_m3, greatest_buoyancy, mixed_base_m, schmidt_stability_j_m2,
-    thermocline,
+    LAYERED_C, Layering, Thermocline, buoyancy_s2, colder_m3, greatest_buoyancy, mixed_base_m,
+    schmidt_stability_j_m2, thermocline,
 };
 pub use levelled::levelled;
 pub(crate) use pressure::HEAD_KG_M3;

@@ -1,6 +1,7 @@
-//! Results to text and JSON, as pure functions.
+//! Results to text, JSON and CSV, as pure functions.
 
 mod column;
+pub mod csv;
 pub mod json;
 mod sentence;
 pub mod text;

@@ -2,6 +2,8 @@
 //!
 //! Methods: `docs/methods.md`, section 8.
 
+use super::step::MOST_OPEN;
+
 /// The terms of one conserved quantity over a day, each counted as it adds to the pool.
 #[derive(Debug, Clone, Copy, Default, PartialEq)]
 pub struct Terms {
@@ -41,4 +43,27 @@ pub struct Balance {
     pub water_m3: Terms,
     /// Of heat above 0 C, J.
     pub heat_j: Terms,
+}
+
+impl Balance {
+    /// Whether both close to round-off.
+    ///
+    /// # Errors
+    /// The quantity that does not, with its terms, in words.
+    pub fn closes(&self) -> Result<(), String> {
+        for (what, unit, terms) in [("water", "m3", &self.water_m3), ("heat", "J", &self.heat_j)] {
+            let open = terms.relative_error();
+            // a sum that is no number is open too
+            if open <= MOST_OPEN {
+                continue;
+            }
+            let Terms { before, inflow, release, surface, after } = *terms;
+            return Err(format!(
+                "the balance of {what} is open by {:.3e} {unit}: before {before:.6e}, inflow {inflow:.6e}, release \
+                 {release:.6e}, surface {surface:.6e}, after {after:.6e}",
+                terms.error()
+            ));
+        }
+        Ok(())
+    }
 }

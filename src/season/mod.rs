@@ -6,22 +6,50 @@
 //!
 //! Methods: `docs/methods.md`, section 8.
 
+mod ahead;
+mod aims;
 mod balance;
+mod beware;
+mod cold;
 mod decide;
+mod diffusion;
+mod exact;
+mod gates;
+mod going;
+mod inflow;
 mod layers;
+mod mixing;
 mod outcome;
+mod outflow;
+mod oxygen;
 mod plan;
+mod reached;
+mod refine;
+mod reshape;
 mod run;
+mod search;
+mod set;
 mod skies;
+mod stages;
 mod step;
+mod strategy;
+mod surface;
 mod tally;
+mod thrift;
 
 pub use balance::{Balance, Terms};
 pub use decide::{Decision, Why};
+pub use diffusion::{diffuse, diffusivity_m2_s};
+pub use inflow::{Neutral, neutral};
 pub use layers::{Layer, Layers};
-pub use outcome::{ColdDay, ColdWater, Exhausted, GateLife, Outcome, StageDate, Stopping, outcome};
+pub use mixing::{friction_velocity_m_s, mixing_energy_j, wind_work_j_m2};
+pub use outcome::{
+    Asks, ColdDay, ColdWater, Exhausted, GateLife, GateMoves, Left, Outcome, Reached, StageDate, StageFall,
+    Stopping, outcome,
+};
+pub use oxygen::{demand_at, left_mg_l};
 pub use plan::{Plan, PlanDay, RawPlan, RawPlanRow, Schedule};
 pub use run::{Choosing, Ended, Run, SeasonDay, Setup, run};
 pub use skies::{Skies, Sky};
-pub use step::{Forcing, Inflow, Stepped, Unbalanced, day};
+pub use step::{Forcing, Inflow, MOST_OPEN, Stepped, Unbalanced, day};
 pub use tally::{Score, TargetTally, tallies};

@@ -4,8 +4,12 @@
 
 use chrono::NaiveDate;
 
-use super::run::{Run, Setup};
-use super::tally::TargetTally;
+use crate::mix::limits::Move;
+use crate::site::Site;
+
+use super::run::{Run, SeasonDay, Setup};
+use super::tally::{Score, TargetTally, tallies};
+use super::{beware, cold, gates, reached, stages};
 
 /// Cold water on a day.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -18,6 +22,13 @@ pub struct ColdDay {
     pub usable_m3: Option<f64>,
 }
 
+impl ColdDay {
+    /// What no usable outlet can draw, m3.
+    pub fn unreachable_m3(&self) -> f64 {
+        self.total_m3 - self.usable_m3.unwrap_or(0.0)
+    }
+}
+
 /// Cold water below one threshold, day by day.
 #[derive(Debug, Clone, PartialEq)]
 pub struct ColdWater {
@@ -25,6 +36,17 @@ pub struct ColdWater {
     pub threshold_c: f64,
     /// By day.
     pub days: Vec<ColdDay>,
+}
+
+/// What was left on a date, and what came of it.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Left {
+    /// The day, at its end.
+    pub date: NaiveDate,
+    /// Usable water below the first threshold of the site, m3; `None` where no outlet is usable.
+    pub usable_m3: Option<f64>,
+    /// Days after it outside hard targets, summed over the targets.
+    pub days_outside: u32,
 }
 
 /// When something runs out.
@@ -38,7 +60,17 @@ pub enum Exhausted {
     Unknown(String),
 }
 
-/// First and last usable day of a gate.
+impl Exhausted {
+    /// The day, where it is one of the season.
+    pub fn on(&self) -> Option<NaiveDate> {
+        match self {
+            Self::On(date) => Some(*date),
+            Self::NotBy(_) | Self::Unknown(_) => None,
+        }
+    }
+}
+
+/// A stretch of days in which a gate can be used.
 #[derive(Debug, Clone, PartialEq)]
 pub struct GateLife {
     /// Index of the outlet.
@@ -53,6 +85,82 @@ pub struct GateLife {
     pub book_by: Option<NaiveDate>,
 }
 
+impl GateLife {
+    /// A gate that no day has.
+    pub(super) fn never(outlet: usize) -> Self {
+        Self { outlet, first_day: None, last_day: None, reason: None, book_by: None }
+    }
+}
+
+/// Gates moved on a day.
+#[derive(Debug, Clone, PartialEq)]
+pub struct GateMoves {
+    /// The day.
+    pub date: NaiveDate,
+    /// Which, in the order of the site.
+    pub moved: Vec<Move>,
+    /// The limit that forces it, by name and in words; `None` where it was due.
+    pub forced: Option<(&'static str, String)>,
+    /// Crew hours.
+    pub crew_hours: f64,
+    /// The day by which the crew must be told; `None` where it needs no notice.
+    pub book_by: Option<NaiveDate>,
+}
+
+/// What a hard rule at the dam asks of a steady day.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Asks {
+    /// Index of the target.
+    pub target: usize,
+    /// Least it leaves, buffer counted in, C.
+    pub low_c: Option<f64>,
+    /// Greatest it leaves, C.
+    pub high_c: Option<f64>,
+}
+
+/// What is within reach on a day of decision.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Reached {
+    /// The day.
+    pub date: NaiveDate,
+    /// Coldest and warmest release that an allowed mix gives, C; `None` where it was not asked, or no mix is allowed.
+    pub attainable_c: Option<[f64; 2]>,
+    /// What the rules ask.
+    pub asks: Vec<Asks>,
+}
+
+impl Reached {
+    /// The range that all rules leave together, C.
+    pub fn range_c(&self) -> (Option<f64>, Option<f64>) {
+        let low = self.asks.iter().filter_map(|a| a.low_c).reduce(f64::max);
+        let high = self.asks.iter().filter_map(|a| a.high_c).reduce(f64::min);
+        (low, high)
+    }
+
+    /// How far the nearest release within reach lies outside, C: above as more than zero, below as less; `None` where
+    /// nothing is asked, or not known.
+    pub fn by_c(&self) -> Option<f64> {
+        let [coldest, warmest] = self.attainable_c?;
+        match self.range_c() {
+            (None, None) => None,
+            (_, Some(high)) if coldest > high => Some(coldest - high),
+            (Some(low), _) if warmest < low => Some(warmest - low),
+            _ => Some(0.0),
+        }
+    }
+}
+
+/// The fastest fall of the stage at a point of the river.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct StageFall {
+    /// Index of the point.
+    pub point: usize,
+    /// Fall, m per hour.
+    pub m_per_hour: f64,
+    /// The day.
+    pub date: NaiveDate,
+}
+
 /// A stage of eggs or young.
 #[derive(Debug, Clone, PartialEq)]
 pub struct StageDate {
@@ -64,12 +172,14 @@ pub struct StageDate {
     pub on: Exhausted,
 }
 
-/// What stops or hampers a season.
+/// What hampers a season.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Stopping {
     /// First day.
     pub date: NaiveDate,
-    /// What.
+    /// Short fixed word for programs.
+    pub kind: &'static str,
+    /// What; quantities as [`say`](crate::units::say) marks them.
     pub words: String,
 }
 
@@ -78,14 +188,24 @@ pub struct Stopping {
 pub struct Outcome {
     /// Cold water below each threshold of the site, by day.
     pub cold: Vec<ColdWater>,
+    /// Cold water below the threshold of each reserve of the site, by day, and the first day under it.
+    pub reserves: Vec<(ColdWater, Exhausted)>,
+    /// What was left on the first of every month.
+    pub left: Vec<Left>,
     /// First day from which no allowed mix reaches the high of the target at the required release.
     pub exhausted: Exhausted,
-    /// First day under a reserve of the site.
+    /// First day under a reserve of the site; `None` where it has none.
     pub under_reserve: Option<Exhausted>,
-    /// First and last usable day of every gate.
+    /// What is within reach on the days of decision.
+    pub reached: Vec<Reached>,
+    /// When every gate can be used.
     pub gates: Vec<GateLife>,
+    /// What is moved when; nothing is told of the first change where the setting now is not known.
+    pub calendar: Vec<GateMoves>,
     /// Every target.
     pub targets: Vec<TargetTally>,
+    /// What the season is measured by.
+    pub score: Score,
     /// Stages.
     pub stages: Vec<StageDate>,
     /// Gates moved.
@@ -98,25 +218,86 @@ pub struct Outcome {
     pub least_oxygen: Option<(f64, NaiveDate)>,
     /// Energy not generated, MWh.
     pub generation_lost_mwh: Option<f64>,
-    /// Deep water newly drawn, drawdown and stage beyond limits.
+    /// The fastest fall of the pool in a day, m, and when.
+    pub fastest_fall: Option<(f64, NaiveDate)>,
+    /// The fastest fall of the stage at each point with a rating.
+    pub stage_falls: Vec<StageFall>,
+    /// The largest errors of the balances of water and of heat, over their largest term.
+    pub errors: (f64, f64),
+    /// Deep water newly drawn, a pool that falls too fast.
     pub warnings: Vec<Stopping>,
 }
 
+/// Hours of a day.
+const HOURS: f64 = 24.0;
+
 /// What comes of a run.
 pub fn outcome(setup: &Setup, run: &Run) -> Outcome {
-    let _ = (setup, run);
+    let site = &season_site(setup);
+    let days = &run.days;
+    let reaches: Vec<Option<f64>> = days.iter().map(|day| cold::reach_m(site, day)).collect();
+    let colder = |threshold_c: f64| cold::by_day(site, days, &reaches, threshold_c);
+    let reserves: Vec<(ColdWater, Exhausted)> = (site.season.reserves.iter())
+        .map(|reserve| {
+            let cold = colder(reserve.colder_c);
+            let under = cold::under(reserve, &cold);
+            (cold, under)
+        })
+        .collect();
+    let reached = reached::reached(setup, site, run);
+    let cold: Vec<ColdWater> = site.cold_water_c.iter().map(|&c| colder(c)).collect();
+    let largest = |of: fn(&SeasonDay) -> f64| days.iter().map(of).fold(0.0, f64::max);
     Outcome {
-        cold: Vec::new(),
-        exhausted: Exhausted::Unknown(String::new()),
-        under_reserve: None,
-        gates: Vec::new(),
-        targets: Vec::new(),
-        stages: Vec::new(),
-        moves: 0,
-        crew_hours: 0.0,
-        turnover: None,
-        least_oxygen: None,
-        generation_lost_mwh: None,
-        warnings: Vec::new(),
+        left: cold::left(site, &setup.skies.conditions, cold.first(), days),
+        cold,
+        under_reserve: first(reserves.iter().map(|r| &r.1)),
+        reserves,
+        exhausted: reached::exhausted(site, &reached, run),
+        reached,
+        gates: gates::lives(site, days),
+        calendar: gates::moves(site, setup, run),
+        targets: tallies(site, &setup.skies.conditions, days),
+        score: Score::of(setup, run),
+        stages: stages::stages(site, days),
+        moves: run.decisions.iter().map(|d| d.moves).sum(),
+        crew_hours: run.decisions.iter().map(|d| d.crew_hours).sum(),
+        turnover: beware::turnover(run),
+        least_oxygen: least_oxygen(days),
+        generation_lost_mwh: generation_lost_mwh(site, days),
+        fastest_fall: beware::fastest_fall(site, run),
+        stage_falls: beware::stage_falls(site, days),
+        errors: (
+            largest(|day| day.balance.water_m3.relative_error()),
+            largest(|day| day.balance.heat_j.relative_error()),
+        ),
+        warnings: beware::warnings(site, run),
     }
+}
+
+/// The site of a season: under the air of its case, with the outages of its plan.
+fn season_site(setup: &Setup) -> Site {
+    let mut site = Site::clone(&setup.skies.site);
+    site.limits.outages.extend(setup.plan.outages.iter().cloned());
+    site
+}
+
+/// The first day of several; where none has one, the first that is not known, else the end.
+fn first<'a>(all: impl Iterator<Item = &'a Exhausted> + Clone) -> Option<Exhausted> {
+    let on = all.clone().filter_map(Exhausted::on).min().map(Exhausted::On);
+    let not_by = || all.clone().find(|e| matches!(e, Exhausted::NotBy(_))).cloned();
+    on.or_else(not_by).or_else(|| all.clone().next().cloned())
+}
+
+/// The least of the season; days of which it is not known are passed over.
+fn least_oxygen(days: &[SeasonDay]) -> Option<(f64, NaiveDate)> {
+    let known = days.iter().filter_map(|day| Some((day.release.oxygen_below_mg_l?, day.date)));
+    known.min_by(|a, b| a.0.total_cmp(&b.0))
+}
+
+/// Energy that the water of the season does not make, MWh; `None` where no outlet tells it.
+fn generation_lost_mwh(site: &Site, days: &[SeasonDay]) -> Option<f64> {
+    let of = |day: &SeasonDay| {
+        site.generation_lost_mw(day.gates.iter().map(|g| (g.outlet, g.flow_m3s))).map(|mw| HOURS * mw)
+    };
+    days.iter().map(of).sum()
 }

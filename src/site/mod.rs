@@ -307,6 +307,16 @@ impl Site {
         (0..self.outlets.len()).any(|outlet| self.aeration(outlet).is_some())
     }
 
+    /// Power that flows (m3/s) through outlets do not make, MW; `None` where no outlet tells it.
+    pub fn generation_lost_mw(&self, flows: impl Iterator<Item = (usize, f64)>) -> Option<f64> {
+        let per = |outlet: usize| {
+            let lost = self.outlets.get(outlet)?.generation_lost?;
+            Some(lost.power_mw / lost.flow_m3s)
+        };
+        (0..self.outlets.len()).find_map(per)?;
+        Some(flows.filter_map(|(outlet, flow)| Some(flow * per(outlet)?)).sum())
+    }
+
     /// Oxygen at saturation below the dam, mg/L, of water that leaves it: the river begins at the elevation of the
     /// bed (choice).
     pub fn saturation_below_mg_l(&self, temperature_c: f64, salt_g_per_kg: f64) -> f64 {

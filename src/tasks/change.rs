@@ -2,7 +2,7 @@
 
 use chrono::{Days, NaiveDate};
 
-use crate::mix::limits::{self, Before, Check, Moves};
+use crate::mix::limits::{self, Before, Check, Move, Moves};
 use crate::mix::{Blend, Setting};
 use crate::site::Site;
 
@@ -15,21 +15,6 @@ pub struct Change {
     pub moved: Vec<Move>,
     /// First day on which the crew can make it, by the notice it needs; `None` where it needs none.
     pub earliest: Option<NaiveDate>,
-}
-
-/// One gate that is to be moved.
-#[derive(Debug, Clone, PartialEq)]
-pub struct Move {
-    /// Index of the outlet.
-    pub outlet: usize,
-    /// Opening now, 0 to 1.
-    pub from: f64,
-    /// Opening then.
-    pub to: f64,
-    /// Flow now, m3/s.
-    pub from_m3s: f64,
-    /// Flow then.
-    pub to_m3s: f64,
 }
 
 /// The change from the setting now to another, decided on a date; `out` gets the limits held against it: rates of
@@ -46,30 +31,11 @@ pub(super) fn change(
     for release in releases {
         moves = limits::change(site, now, before, to, release, out);
     }
-    Change { moves, moved: moved(site, now, to), earliest: after(date, moves.lead_days) }
+    Change { moves, moved: limits::moved(site, now, to), earliest: after(date, moves.lead_days) }
 }
 
 /// The day so many days after another, a part of one counted as one.
 #[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "a whole number of days, capped")]
 fn after(date: NaiveDate, days: f64) -> Option<NaiveDate> {
     (days > 0.0).then(|| date.checked_add_days(Days::new(days.ceil().clamp(0.0, 36_500.0) as u64)))?
-}
-
-fn moved(site: &Site, now: &Setting, to: &Setting) -> Vec<Move> {
-    let at = |setting: &Setting, outlet: usize| {
-        let gate = setting.gates.iter().find(|g| g.outlet == outlet && setting.stands_open(site, g));
-        gate.map_or((0.0, 0.0), |g| (g.opening, g.flow_m3s))
-    };
-    (0..site.outlets.len())
-        .filter_map(|outlet| {
-            let ((from, from_m3s), (to, to_m3s)) = (at(now, outlet), at(to, outlet));
-            limits::is_moved(&site.outlets[outlet], (from, from_m3s), (to, to_m3s)).then_some(Move {
-                outlet,
-                from,
-                to,
-                from_m3s,
-                to_m3s,
-            })
-        })
-        .collect()
 }

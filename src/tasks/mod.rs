@@ -34,12 +34,14 @@ mod since;
 mod solve;
 mod words;
 
+pub use crate::mix::OutletState;
+pub use crate::mix::limits::Move;
 pub use casts::{Cast, casts};
-pub use change::{Change, Move};
+pub use change::Change;
 pub use changed::Changed;
 pub use day::{BlockAnswer, DayAnswer};
 pub use mix::{MixAnswer, mix, mix_given};
-pub use pool::{ColdWater, OutletState, PoolAnswer, cold_water, pool};
+pub use pool::{ColdWater, PoolAnswer, cold_water, pool};
 pub use setting::{Understood, given, now_setting, setting};
 pub use since::{ColdChange, Since};
 pub use solve::{Solved, preferred_c, solve};

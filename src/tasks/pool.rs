@@ -3,11 +3,10 @@
 //! Methods: `docs/methods.md`, section 2.
 
 use crate::files::text::Source;
-use crate::intake;
+use crate::mix::{OutletState, outlet_states, reach_m};
 use crate::problem::Problem;
 use crate::profile::{Layering, Profile, colder_m3};
-use crate::site::{Kind, Outlet, Site};
-use crate::withdrawal::{CrestForm, Opening, Sink, zone};
+use crate::site::Site;
 
 use super::Context;
 use super::since::{Since, heat_change, previous, since};
@@ -21,19 +20,6 @@ pub struct ColdWater {
     pub total_m3: f64,
     /// What the usable outlets can draw, m3; `None` when no outlet is usable.
     pub usable_m3: Option<f64>,
-}
-
-/// An outlet under the pool.
-#[derive(Debug, Clone, PartialEq)]
-pub struct OutletState {
-    /// Index of the outlet.
-    pub outlet: usize,
-    /// Water above the top of the fully open outlet, m.
-    pub submergence_m: f64,
-    /// Whether it has water.
-    pub wet: bool,
-    /// Whether it keeps the submergence asked for; `None` where none is.
-    pub kept: Option<bool>,
 }
 
 /// The answer of `pool`.
@@ -90,8 +76,8 @@ pub(super) struct Water<'a> {
 
 impl<'a> Water<'a> {
     pub(super) fn of(site: &'a Site, profile: &'a Profile) -> Self {
-        let outlets = outlets(site, profile.pool_m);
-        let reach_m = reach_m(site, profile, &outlets);
+        let outlets = outlet_states(site, profile.pool_m);
+        let reach_m = deepest_m(site, profile, &outlets);
         Self { site, profile, outlets, reach_m }
     }
 
@@ -105,40 +91,9 @@ fn colder(site: &Site, profile: &Profile, reach_m: Option<f64>, threshold_c: f64
     ColdWater { threshold_c, total_m3: above(site.pool.bed_m), usable_m3: reach_m.map(above) }
 }
 
-/// The outlets under a pool, from the highest down.
-fn outlets(site: &Site, pool_m: f64) -> Vec<OutletState> {
-    let state = |(outlet, o): (usize, &Outlet)| {
-        let submergence_m = intake::submergence_m(o, 1.0, pool_m);
-        OutletState {
-            outlet,
-            submergence_m,
-            wet: intake::is_wet(o, 1.0, pool_m),
-            kept: o.min_submergence_m.map(|least| submergence_m >= least),
-        }
-    };
-    let mut outlets: Vec<OutletState> = site.outlets.iter().enumerate().map(state).collect();
-    let place = |s: &OutletState| (site.outlets[s.outlet].centre_m, &site.outlets[s.outlet].name);
-    outlets.sort_by(|a, b| {
-        let (a, b) = (place(a), place(b));
-        b.0.total_cmp(&a.0).then_with(|| a.1.cmp(b.1))
-    });
-    outlets
-}
-
 /// Lowest limit of the deepest usable outlet at the least release of the site, m; its centre-line where the site
 /// asks for none.
-fn reach_m(site: &Site, profile: &Profile, outlets: &[OutletState]) -> Option<f64> {
-    let deepest = outlets.iter().rev().find(|s| s.wet && s.kept != Some(false))?;
-    let outlet = &site.outlets[deepest.outlet];
-    let most = intake::capacity_m3s(site, outlet, 1.0, profile.pool_m).unwrap_or(f64::INFINITY);
-    let flow_m3s = site.release.min_m3s.unwrap_or(0.0).min(most);
-    let sink = Sink {
-        centre_m: outlet.open_part(1.0).centre_m,
-        flow_m3s,
-        opening: match outlet.kind {
-            Kind::Crest { length_m, .. } => Opening::Crest { length_m, form: CrestForm::Overflow },
-            Kind::Orifice(_) => Opening::Port { angle_rad: outlet.angle_rad },
-        },
-    };
-    Some(zone(&profile.column, &sink, 1.0).map_or(sink.centre_m, |z| z.lower.limit_m))
+fn deepest_m(site: &Site, profile: &Profile, outlets: &[OutletState]) -> Option<f64> {
+    let deepest = outlets.iter().rev().find(|s| s.has_water())?;
+    reach_m(site, &profile.column, deepest.outlet, site.release.min_m3s.unwrap_or(0.0))
 }

@@ -95,6 +95,18 @@ pub enum Action {
     DayByDay,
     /// What stations recorded.
     Record,
+    /// The next case of weather.
+    Case,
+    /// The next plan.
+    Plan,
+    /// The next strategy.
+    Strategy,
+    /// Cases, plans and strategies side by side.
+    Beside,
+    /// Moves and gates by date.
+    Calendar,
+    /// Oxygen in place of temperature.
+    Oxygen,
 }
 
 /// Where a key works.
@@ -112,6 +124,8 @@ pub enum Place {
     Rank,
     /// The river screen.
     River,
+    /// The season screen.
+    Season,
     /// The list of sites.
     Sites,
     /// The list of problems of a broken site.
@@ -126,13 +140,14 @@ pub enum Place {
 
 impl Place {
     /// Every place with its heading in the help.
-    pub const HEADINGS: [(Self, &'static str); 11] = [
+    pub const HEADINGS: [(Self, &'static str); 12] = [
         (Self::Everywhere, "everywhere"),
         (Self::Site, "every screen"),
         (Self::Pool, "pool"),
         (Self::Mix, "mix"),
         (Self::Rank, "rank"),
         (Self::River, "river"),
+        (Self::Season, "season"),
         (Self::Sites, "list of sites"),
         (Self::Problems, "problems of the files"),
         (Self::Help, "this help"),
@@ -187,10 +202,11 @@ pub const TABLE: &[Binding] = &[
     ctrl('z', "Ctrl-Z", "to the shell; fg comes back", A::Suspend),
     on(P::Everywhere, KeyCode::Esc, "Esc", "", "back; stops computing", A::Back),
     on(P::Everywhere, Char(','), ",", "", "settings: units, symbols, colours, mouse", A::Settings),
-    on(P::Site, Char('1'), "1-4", "", "pool, mix, rank, river", A::Screen(1)),
+    on(P::Site, Char('1'), "1-5", "", "pool, mix, rank, river, season", A::Screen(1)),
     on(P::Site, Char('2'), "", "", "", A::Screen(2)),
     on(P::Site, Char('3'), "", "", "", A::Screen(3)),
     on(P::Site, Char('4'), "", "", "", A::Screen(4)),
+    on(P::Site, Char('5'), "", "", "", A::Screen(5)),
     on(P::Site, KeyCode::Tab, "Tab", "", "the next screen", A::NextScreen),
     on(P::Site, KeyCode::BackTab, "", "", "", A::PreviousScreen),
     on(P::Site, Char('y'), "y", "", "copy this answer to the clipboard of the terminal", A::Copy),
@@ -282,6 +298,40 @@ pub const TABLE: &[Binding] = &[
     on(P::River, Char('r'), "r", "", "make it again", A::Redo),
     on(P::River, KeyCode::PageUp, "PgUp PgDn", "", "scroll", A::PageUp),
     on(P::River, KeyCode::PageDown, "", "", "", A::PageDown),
+    on(P::Season, KeyCode::Left, "Left Right", "date", "a day back, a day on", A::Left),
+    on(P::Season, KeyCode::Right, "", "", "", A::Right),
+    on(P::Season, Char('['), "[ ]", "", "a week back, a week on", A::Before),
+    on(P::Season, Char(']'), "", "", "", A::After),
+    on(P::Season, Char('<'), "< >", "moves", "the move before, the move after", A::MuchLess),
+    on(P::Season, Char('>'), "", "", "", A::MuchMore),
+    on(P::Season, Char('.'), "", "", "", A::MuchMore),
+    on(P::Season, Char('c'), "c", "case", "the next case of weather and inflow", A::Case),
+    on(P::Season, Char('p'), "p", "plan", "the next plan", A::Plan),
+    on(P::Season, Char('s'), "s", "strategy", "the next strategy: hold, best, thrift", A::Strategy),
+    on(P::Season, Char('t'), "t", "table", "cases, plans and strategies side by side; and back", A::Beside),
+    on(P::Season, Char('g'), "g", "gates", "moves and gates by date; and back", A::Calendar),
+    on(P::Season, Char('x'), "x", "oxygen", "oxygen in place of temperature; and back", A::Oxygen),
+    on(
+        P::Season,
+        KeyCode::Up,
+        "Up Down",
+        "",
+        "where the release is looked at: the dam, the points; scroll",
+        A::Up,
+    ),
+    on(P::Season, KeyCode::Down, "", "", "", A::Down),
+    on(
+        P::Season,
+        Char('r'),
+        "r",
+        "",
+        "compute what is shown as the case it is solved on; again after a stop",
+        A::Again,
+    ),
+    on(P::Season, KeyCode::PageUp, "PgUp PgDn", "", "scroll what is said", A::PageUp),
+    on(P::Season, KeyCode::PageDown, "", "", "", A::PageDown),
+    on(P::Season, KeyCode::Home, "Home End", "", "the first day, the last", A::First),
+    on(P::Season, KeyCode::End, "", "", "", A::Last),
     on(P::Sites, KeyCode::Up, "Up Down", "choose", "choose a site", A::Up),
     on(P::Sites, KeyCode::Down, "", "", "", A::Down),
     on(P::Sites, KeyCode::Enter, "Enter", "open", "open it", A::Enter),

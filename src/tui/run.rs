@@ -78,6 +78,7 @@ fn on_terminal(asked: Asked) -> io::Result<()> {
         long: worker(&send),
         aside: worker(&send),
         down: worker(&send),
+        ahead: worker(&send),
         errands: {
             let send = send.clone();
             Errands::start(move |event| _ = send.send(Arrived::Event(event)))
@@ -164,6 +165,7 @@ struct Outside {
     long: Worker,
     aside: Worker,
     down: Worker,
+    ahead: Worker,
     errands: Errands,
     kept: Kept,
     watched: Arc<Mutex<Option<Seen>>>,
@@ -202,6 +204,7 @@ impl Outside {
             Lane::Long => &self.long,
             Lane::Aside => &self.aside,
             Lane::Down => &self.down,
+            Lane::Ahead => &self.ahead,
         }
     }
 

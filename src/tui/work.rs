@@ -14,13 +14,14 @@ use crate::files::folder::{Stamps, stamps};
 use crate::problem::Problem;
 use crate::tasks::rank::{RankAnswer, RankAsked, Shown, rank};
 use crate::tasks::river::downstream;
+use crate::tasks::season::season;
 use crate::tasks::{
     Asked, Cast, Changed, Context, Failure, Given, MixAnswer, PoolAnswer, Solved, casts, mix, mix_given,
     open, pool, preferred_c, solve,
 };
 use crate::units::System;
 
-use super::model::{Downstream, asked};
+use super::model::{Ahead, Downstream, SeasonQuestion, asked};
 
 /// Who computes: what answers a key, or what takes longer.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -33,6 +34,8 @@ pub enum Lane {
     Aside,
     /// The river.
     Down,
+    /// The season.
+    Ahead,
 }
 
 /// What settings are computed on.
@@ -78,6 +81,8 @@ pub enum Work {
         /// The best of the ranking, with what it sets.
         best: Option<Box<(Given, Shown)>>,
     },
+    /// The season ahead, under what is changed.
+    Season(SeasonQuestion),
 }
 
 /// What settings are computed on.
@@ -120,6 +125,8 @@ pub enum Done {
     Casts(Result<Vec<Cast>, Failure>),
     /// What arrives downstream.
     Down(Result<Box<Downstream>, Failure>),
+    /// The season.
+    Ahead(Result<Box<Ahead>, Failure>),
 }
 
 impl Work {
@@ -130,6 +137,7 @@ impl Work {
             Self::Rank { .. } => Lane::Long,
             Self::Casts(..) => Lane::Aside,
             Self::River { .. } => Lane::Down,
+            Self::Season(..) => Lane::Ahead,
         }
     }
 
@@ -161,6 +169,12 @@ impl Work {
                 let answer = downstream(&context, Some(&answer), now.as_ref(), shown.as_ref());
                 Done::Down(Ok(Box::new(Downstream { context, tried: Some(given), best, answer })))
             }
+            Self::Season(question) => {
+                Done::Ahead(question.base.changed(&question.changed).and_then(|context| {
+                    let answer = season(&context, &question.asked, progress)?;
+                    Ok(Box::new(Ahead { question, context: Arc::new(context), answer }))
+                }))
+            }
         }
     }
 
@@ -172,6 +186,7 @@ impl Work {
             Lane::Long => Done::Ranked(Err(failure)),
             Lane::Aside => Done::Casts(Err(failure)),
             Lane::Down => Done::Down(Err(failure)),
+            Lane::Ahead => Done::Ahead(Err(failure)),
             Lane::Quick if opening => Done::Opened(Err(failure), None),
             Lane::Quick => Done::Mixed(Err(failure)),
         }

@@ -5,5 +5,7 @@ pub(crate) mod basin;
 pub(crate) mod column;
 pub(crate) mod record;
 pub(crate) mod season;
+pub(crate) mod sonde;
 pub(crate) mod sorrel;
+pub(crate) mod tessel;
 pub(crate) mod water;

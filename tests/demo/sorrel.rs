@@ -19,15 +19,13 @@ mod river;
 mod stations;
 mod weather;
 
-use std::fmt::Write;
-
-use chrono::{NaiveDate, NaiveDateTime};
-use rand_distr::{Distribution, StandardNormal};
+use chrono::NaiveDate;
 use rand_pcg::Pcg32;
 use serde_yaml::Value;
 
 use super::basin::Basin;
 use super::column::{Column, Nature, Water};
+use super::sonde::{Cast, sound, times};
 use operation::{Inflow, operate, rule_curve_m};
 use river::{Point, Reach};
 use weather::{Hour, Weather};
@@ -37,8 +35,6 @@ const FIRST_DAY: (i32, u32, u32) = (2024, 11, 10);
 const STEPS_A_DAY: u32 = 6;
 /// Days of forecast after the day of the newest cast.
 const FORECAST_DAYS: u64 = 10;
-/// Sensor noise as a standard deviation: C, mg/L, uS/cm.
-const NOISE: (f64, f64, f64) = (0.03, 0.06, 0.8);
 /// A shallow turbid pool over rich mud.
 const NATURE: Nature = Nature { zone_m: 2.2, light_loss_1_m: 0.7, demand: 1.5 };
 /// Times of all casts, local standard time, the newest last.
@@ -89,13 +85,6 @@ impl Site {
     }
 }
 
-/// One cast: when, the pool (m) and its rows of depth (m) and what the sonde read there.
-pub(crate) struct Cast {
-    pub(crate) taken: NaiveDateTime,
-    pub(crate) pool_m: f64,
-    pub(crate) rows: Vec<(f64, Water)>,
-}
-
 /// One day of the dam.
 pub(crate) struct Day {
     pub(crate) date: NaiveDate,
@@ -115,8 +104,7 @@ pub(crate) struct Years {
 }
 
 pub(crate) fn years(site: &Site) -> Years {
-    let times: Vec<NaiveDateTime> =
-        TAKEN.iter().map(|text| NaiveDateTime::parse_from_str(text, "%Y-%m-%dT%H:%M").unwrap()).collect();
+    let times = times(&TAKEN);
     let last = times[times.len() - 1].date() + chrono::Days::new(FORECAST_DAYS);
     let (y, m, d) = FIRST_DAY;
     let mut date = NaiveDate::from_ymd_opt(y, m, d).unwrap();
@@ -133,50 +121,18 @@ pub(crate) fn years(site: &Site) -> Years {
             column.step(&forcing, 86400.0 / f64::from(STEPS_A_DAY));
         }
         for &taken in times.iter().filter(|taken| taken.date() == date) {
-            casts.push(sound(site, &column, taken, &mut sensor));
+            casts.push(sound(&site.basin, &column, taken, &mut sensor));
         }
         date = date.succ_opt().unwrap();
     }
     Years { casts, days }
 }
 
-/// Lowers the sonde: every metre, from just below the surface to just above the bed.
-fn sound(site: &Site, column: &Column, taken: NaiveDateTime, random: &mut Pcg32) -> Cast {
-    let pool_m = (100.0 * column.pool_m()).round() / 100.0;
-    let deepest_m = ((pool_m - site.basin.bed_m() - 0.5) * 10.0).floor() / 10.0;
-    let whole = (1..).map(f64::from).take_while(|&depth| depth < deepest_m - 0.3);
-    let mut noisy = |value: f64, deviation: f64| {
-        let draw: f64 = StandardNormal.sample(random);
-        value + deviation * draw
-    };
-    let rows = std::iter::once(0.2).chain(whole).chain([deepest_m]).map(|depth_m| {
-        let water = column.at(pool_m - depth_m);
-        let read = Water {
-            temperature_c: noisy(water.temperature_c, NOISE.0),
-            oxygen_mg_l: noisy(water.oxygen_mg_l, NOISE.1).max(0.0),
-            conductance_us_cm: noisy(water.conductance_us_cm, NOISE.2),
-        };
-        (depth_m, read)
-    });
-    Cast { taken, pool_m, rows: rows.collect() }
-}
-
 /// Every file beside `site.yaml`: its path in the folder and its text.
 pub(crate) fn files(site: &Site, years: &Years) -> Vec<(String, String)> {
-    let mut files: Vec<_> = years.casts.iter().map(cast_file).collect();
+    let mut files: Vec<_> =
+        years.casts.iter().map(|cast| cast.file("Sorrel Dam on the Tamble River")).collect();
     files.push(("weather.csv".into(), weather::file(years)));
     files.extend(stations::files(site, years));
     files
-}
-
-fn cast_file(cast: &Cast) -> (String, String) {
-    let mut text = String::from("# Sorrel Dam on the Tamble River: invented data of an invented place.\n");
-    writeln!(text, "# taken: {}", cast.taken.format("%Y-%m-%dT%H:%M")).unwrap();
-    writeln!(text, "# pool: {:.2} m", cast.pool_m).unwrap();
-    text.push_str("depth_m,temperature_C,oxygen_mg_l,specific_conductance_us_cm\n");
-    for (depth_m, water) in &cast.rows {
-        let (t, oxygen, conductance) = (water.temperature_c, water.oxygen_mg_l, water.conductance_us_cm);
-        writeln!(text, "{depth_m:.1},{t:.2},{oxygen:.2},{conductance:.0}").unwrap();
-    }
-    (format!("profiles/{}.csv", cast.taken.date()), text)
 }

@@ -22,6 +22,30 @@ pub struct Moves {
     pub lead_days: f64,
 }
 
+/// One gate that is to be moved.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Move {
+    /// Index of the outlet.
+    pub outlet: usize,
+    /// Opening now, 0 to 1.
+    pub from: f64,
+    /// Opening then.
+    pub to: f64,
+    /// Flow now, m3/s.
+    pub from_m3s: f64,
+    /// Flow then.
+    pub to_m3s: f64,
+}
+
+/// The gates that move from one setting to another, in the order of the site.
+pub fn moved(site: &Site, now: &Setting, to: &Setting) -> Vec<Move> {
+    let one = |(outlet, o): (usize, &Outlet)| {
+        let ((from, from_m3s), (to, to_m3s)) = (set(site, now, outlet), set(site, to, outlet));
+        is_moved(o, (from, from_m3s), (to, to_m3s)).then_some(Move { outlet, from, to, from_m3s, to_m3s })
+    };
+    site.outlets.iter().enumerate().filter_map(one).collect()
+}
+
 /// Moves between two settings, each gate in them open where it gives water.
 ///
 /// An outlet with positions moves when its opening changes, shut counting as 0; one of any flow when its flow changes.

@@ -4,6 +4,8 @@ mod rank;
 mod rank_shape;
 mod river;
 mod river_record;
+mod season;
+mod season_shape;
 mod shape;
 mod targets;
 
@@ -32,6 +34,7 @@ use targets::{conflicts, points, targets};
 
 pub use rank::rank;
 pub use river::river;
+pub use season::season;
 
 /// The answer of `mix`.
 pub fn mix(context: &Context, answer: &MixAnswer) -> String {
@@ -322,6 +325,11 @@ fn checks(site: &Site, checks: &[Check]) -> Vec<CheckJson> {
 
 /// What is to be moved.
 fn moved(site: &Site, change: &Change) -> Vec<MovedJson> {
+    moved_gates(site, &change.moved)
+}
+
+/// Gates that move.
+fn moved_gates(site: &Site, moves: &[Move]) -> Vec<MovedJson> {
     let one = |m: &Move| MovedJson {
         outlet: site.outlets[m.outlet].name.clone(),
         from_open: 100.0 * m.from,
@@ -329,5 +337,5 @@ fn moved(site: &Site, change: &Change) -> Vec<MovedJson> {
         from_m3s: m.from_m3s,
         to_m3s: m.to_m3s,
     };
-    change.moved.iter().map(one).collect()
+    moves.iter().map(one).collect()
 }

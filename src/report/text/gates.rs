@@ -4,7 +4,7 @@ use std::fmt::Write as _;
 
 use crate::mix::Gate;
 use crate::problem::harmless;
-use crate::site::Outlet;
+use crate::site::{Outlet, Site};
 use crate::tasks::rank::{Shown, ShownPart};
 use crate::tasks::{Change, Context, Move};
 use crate::units::{Dimension, System, figure};
@@ -85,6 +85,17 @@ pub fn instruction(context: &Context, part: &ShownPart, system: System) -> Strin
 
 /// Which gates move, from where to where, and from which day the crew can.
 pub fn moves(context: &Context, change: &Change, system: System) -> String {
+    let moved = moved(context.site(), &change.moved, system);
+    let mut out =
+        if moved.is_empty() { "no gate moves".into() } else { format!("move {}", moved.join(", ")) };
+    if let Some(day) = change.earliest {
+        _ = write!(out, "; the crew can come from {day}");
+    }
+    out
+}
+
+/// Every gate that moves, from where to where.
+pub(super) fn moved(site: &Site, moves: &[Move], system: System) -> Vec<String> {
     let stand = |o: &Outlet, open: f64, flow_m3s: f64| {
         if open <= 0.0 {
             "shut".to_owned()
@@ -95,14 +106,8 @@ pub fn moves(context: &Context, change: &Change, system: System) -> String {
         }
     };
     let one = |m: &Move| {
-        let o = &context.site().outlets[m.outlet];
+        let o = &site.outlets[m.outlet];
         harmless(&format!("{} {} to {}", o.name, stand(o, m.from, m.from_m3s), stand(o, m.to, m.to_m3s)))
     };
-    let moved: Vec<String> = change.moved.iter().map(one).collect();
-    let mut out =
-        if moved.is_empty() { "no gate moves".into() } else { format!("move {}", moved.join(", ")) };
-    if let Some(day) = change.earliest {
-        _ = write!(out, "; the crew can come from {day}");
-    }
-    out
+    moves.iter().map(one).collect()
 }

@@ -5,6 +5,7 @@ mod mix;
 mod pool;
 pub mod rank;
 pub mod river;
+pub mod season;
 mod targets;
 
 use std::fmt::Write as _;
@@ -14,6 +15,7 @@ use unicode_width::UnicodeWidthStr;
 use crate::problem::{Problem, Weight, harmless};
 use crate::tasks::rank::RankAnswer;
 use crate::tasks::river::RiverAnswer;
+use crate::tasks::season::SeasonAnswer;
 use crate::tasks::{Context, Freshness, MixAnswer, PoolAnswer};
 use crate::units::{Dimension, System, show};
 
@@ -67,6 +69,14 @@ pub fn rank(context: &Context, answer: &RankAnswer) -> String {
 pub fn river(context: &Context, answer: &RiverAnswer) -> String {
     let mut out = head(context, &context.fingerprint);
     out.push_str(&river::body(context, answer));
+    out.push_str(&wrapped(caution(), 0));
+    out
+}
+
+/// The answer of `season`.
+pub fn season(context: &Context, answer: &SeasonAnswer) -> String {
+    let mut out = head(context, &answer.fingerprint);
+    out.push_str(&season::body(context, answer));
     out.push_str(&wrapped(caution(), 0));
     out
 }

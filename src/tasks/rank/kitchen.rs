@@ -6,7 +6,6 @@ use crate::mix::{
     release, resolve,
 };
 use crate::rank::Ranked;
-use crate::site::Site;
 use crate::tasks::Context;
 use crate::tasks::change::{Change, change};
 use crate::withdrawal::CrestForm;
@@ -118,7 +117,11 @@ impl Kitchen<'_> {
             Some(&threshold) => over(&|p| Some(DAY_S * self.colder_m3s(p, threshold))),
             None => None,
         };
-        let generation_lost_mw = generation_lost_mw(site, &parts);
+        let lost = |p: &ShownPart| {
+            let flows = p.setting.gates.iter().map(|g| (g.outlet, g.flow_m3s));
+            site.generation_lost_mw(flows)
+        };
+        let generation_lost_mw = over(&lost);
         let spread = over_day(&parts);
         let of_day: Vec<_> = parts.iter().map(|p| (p.share, &p.mix.release, &p.mix.spread)).collect();
         let Held { targets, conflicts, points, .. } = held(site, &of_day, self.day);
@@ -239,16 +242,6 @@ fn over_day(parts: &[ShownPart]) -> Spread {
         (parts.iter().map(|p| p.share * of(p).0).sum(), oxygen)
     };
     Spread { cases: (0..count).map(case).collect() }
-}
-
-/// Power that the water of a day does not make, MW; `None` where no outlet gives it.
-fn generation_lost_mw(site: &Site, parts: &[ShownPart]) -> Option<f64> {
-    let per = |outlet: usize| site.outlets[outlet].generation_lost.map(|g| g.power_mw / g.flow_m3s);
-    (0..site.outlets.len()).find_map(per)?;
-    let lost = |p: &ShownPart| -> f64 {
-        p.setting.gates.iter().filter_map(|g| Some(g.flow_m3s * per(g.outlet)?)).sum()
-    };
-    Some(parts.iter().map(|p| p.share * lost(p)).sum())
 }
 
 /// Each limit once, with its least room over the parts of the day.

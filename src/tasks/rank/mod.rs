@@ -18,7 +18,8 @@ use crate::units::say;
 use super::words::Word;
 use super::{Context, Failure, now_setting, setting};
 
-pub use answers::{Least, Lost, Part, Pocket, PreferredSplit, Root, Trade};
+pub use crate::mix::split::Part;
+pub use answers::{Least, Lost, Pocket, PreferredSplit, Root, Trade};
 pub use asked::{RankAsked, ReleaseFrom};
 pub use shown::{Shown, ShownPart, Unsure};
 
@@ -181,7 +182,11 @@ pub fn rank(
 }
 
 /// The setting now, as typed or else as the site file gives it; what was assumed, or why there is none, becomes a note.
-fn now(context: &Context, typed: &[String], notes: &mut Vec<Problem>) -> Result<Option<Setting>, Failure> {
+pub(super) fn now(
+    context: &Context,
+    typed: &[String],
+    notes: &mut Vec<Problem>,
+) -> Result<Option<Setting>, Failure> {
     let understood = if typed.is_empty() {
         match now_setting(context) {
             Ok(understood) => understood,

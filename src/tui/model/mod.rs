@@ -3,6 +3,7 @@
 mod board;
 mod draft;
 mod field;
+mod season;
 mod session;
 mod tries;
 
@@ -15,6 +16,7 @@ use crate::units::System;
 pub use board::{Cell, Row, rows};
 pub use draft::{Draft, History};
 pub use field::{Field, Typed, Value};
+pub use season::{Ahead, SeasonPage, SeasonQuestion, SeasonShown, SeasonView};
 pub use session::{
     Downstream, MixView, Page, PoolView, RankView, Ranked, RiverPage, RiverView, Session, Shown, Whole,
 };
@@ -34,12 +36,19 @@ pub enum Screen {
     Rank,
     /// What arrives downstream.
     River,
+    /// What it costs later.
+    Season,
 }
 
 impl Screen {
     /// The screens there are, in the order of their numbers.
-    pub const ALL: [(&'static str, Self); 4] =
-        [("pool", Self::Pool), ("mix", Self::Mix), ("rank", Self::Rank), ("river", Self::River)];
+    pub const ALL: [(&'static str, Self); 5] = [
+        ("pool", Self::Pool),
+        ("mix", Self::Mix),
+        ("rank", Self::Rank),
+        ("river", Self::River),
+        ("season", Self::Season),
+    ];
 }
 
 /// A site of the list.
@@ -166,6 +175,8 @@ pub struct Model {
     pub aside: Option<Under>,
     /// What is being computed of the river.
     pub down: Option<Under>,
+    /// What is being computed of the season.
+    pub ahead: Option<Under>,
 }
 
 impl Model {
@@ -187,6 +198,7 @@ impl Model {
             long: None,
             aside: None,
             down: None,
+            ahead: None,
         }
     }
 
@@ -208,7 +220,7 @@ impl Model {
 
     /// Whether anything is being computed.
     pub fn under_way(&self) -> bool {
-        [&self.quick, &self.long, &self.aside, &self.down].into_iter().any(Option::is_some)
+        [&self.quick, &self.long, &self.aside, &self.down, &self.ahead].into_iter().any(Option::is_some)
     }
 
     /// What is under way in a lane.
@@ -218,6 +230,7 @@ impl Model {
             Lane::Long => &mut self.long,
             Lane::Aside => &mut self.aside,
             Lane::Down => &mut self.down,
+            Lane::Ahead => &mut self.ahead,
         }
     }
 }

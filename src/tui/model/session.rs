@@ -10,6 +10,7 @@ use super::super::work::Anew;
 use super::Screen;
 use super::board::{Cell, Row, rows};
 use super::draft::{Draft, History};
+use super::season::{Ahead, SeasonQuestion, SeasonView};
 use super::tries::taken;
 
 /// Pool and settings as they were computed together.
@@ -165,6 +166,14 @@ pub struct Session {
     pub river_wrong: Option<Failure>,
     /// The river screen.
     pub river: RiverView,
+    /// Seasons as far as they were asked, the newest last.
+    pub ahead: Vec<Ahead>,
+    /// The question about them that is under way.
+    pub season_asked: Option<SeasonQuestion>,
+    /// Why the newest question about them has no answer.
+    pub season_wrong: Option<Failure>,
+    /// The season screen.
+    pub season: SeasonView,
 }
 
 impl Session {
@@ -193,6 +202,10 @@ impl Session {
             downstream: None,
             river_wrong: None,
             river: RiverView::default(),
+            ahead: Vec::new(),
+            season_asked: None,
+            season_wrong: None,
+            season: SeasonView::default(),
         }
     }
 

@@ -43,12 +43,13 @@ pub(super) fn sent(model: &mut Model, sent: Sent) -> Vec<Effect> {
                 }
                 Done::Mixed(mixed) => {
                     let effects = self::mixed(model, mixed);
-                    effects.into_iter().chain(ask_river(model)).collect()
+                    effects.into_iter().chain(ask_river(model)).chain(super::season::ask(model)).collect()
                 }
                 Done::Ranked(ranked) => {
                     super::rank::ranked(model, ranked);
                     ask_river(model).into_iter().collect()
                 }
+                Done::Ahead(ahead) => super::season::told(model, ahead),
                 Done::Down(down) => {
                     if let Some(session) = model.session_mut() {
                         match down {
@@ -105,7 +106,8 @@ fn opened(model: &mut Model, opened: Result<Arc<Context>, Failure>) -> Vec<Effec
         }
     };
     model.stage = Stage::Site(session);
-    [ask_mixes(model, None), ask_casts(model), ask_rank(model)].into_iter().flatten().collect()
+    let season = super::season::ask(model);
+    [ask_mixes(model, None), ask_casts(model), ask_rank(model), season].into_iter().flatten().collect()
 }
 
 fn mixed(model: &mut Model, mixed: Result<Box<Computed>, Failure>) -> Vec<Effect> {

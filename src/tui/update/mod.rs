@@ -7,6 +7,7 @@ mod mouse;
 mod pool;
 mod rank;
 mod river;
+mod season;
 mod typing;
 
 use std::sync::Arc;
@@ -24,7 +25,7 @@ pub(super) use river::rules;
 
 use super::keys::{Action, Place, action};
 use super::model::{Choice, Draft, Likes, Message, Model, Over, Screen, Session, Stage, Under};
-use super::view::{answer_text, mix_rows, rank_rows, river_rows, rule_in_sight};
+use super::view::{answer_text, mix_rows, rank_rows, river_rows, rule_in_sight, season_rows};
 use super::work::{Lane, On, Seen, Sent, Work};
 
 /// A message.
@@ -143,6 +144,7 @@ pub fn places(model: &Model) -> Vec<Place> {
                 Screen::Mix => Place::Mix,
                 Screen::Rank => Place::Rank,
                 Screen::River => Place::River,
+                Screen::Season => Place::Season,
             };
             vec![screen, Place::Site, Place::Everywhere]
         }
@@ -195,6 +197,7 @@ fn act(model: &mut Model, action: Action) -> Vec<Effect> {
                 Screen::Mix => mix::act(model, other),
                 Screen::Rank => rank::act(model, other),
                 Screen::River => river::act(model, other),
+                Screen::Season => season::act(model, other),
             },
         },
     }
@@ -208,7 +211,11 @@ fn to_screen(model: &mut Model, to: impl Fn(usize) -> usize) -> Vec<Effect> {
         }
     }
     model.message = None;
-    ask_river(model).into_iter().collect()
+    if let Some(session) = model.session_mut() {
+        // who comes back to what was stopped wants it
+        session.season_wrong = None;
+    }
+    ask_river(model).into_iter().chain(season::ask(model)).collect()
 }
 
 /// Back: what is looked at on the pool screen first, then long work is stopped, then what was said is taken off.
@@ -225,14 +232,24 @@ fn back(model: &mut Model) -> Vec<Effect> {
             return Vec::new();
         }
     }
+    let season = model.session().is_some_and(|s| s.screen == Screen::Season);
+    if season && let Some(effect) = season::stop(model) {
+        return vec![effect];
+    }
     if let Some(under) = model.long.take() {
         say(model, "stopped; what is shown was computed before");
         let stop = Effect::Stop(Lane::Long, under.generation + 1);
         return std::iter::once(stop).chain(ask_river(model)).collect();
     }
+    if let Some(effect) = season::stop(model) {
+        return vec![effect];
+    }
     model.message = None;
     if model.session().is_some_and(|s| s.screen == Screen::Rank) {
         return rank::back(model);
+    }
+    if season {
+        season::back(model);
     }
     if model.session().is_some_and(|s| s.screen == Screen::River) {
         river::back(model);
@@ -245,6 +262,7 @@ fn copy(model: &mut Model) -> Vec<Effect> {
     let old = model.session().is_some_and(|s| match s.screen {
         Screen::Rank => !s.ranks_now(),
         Screen::River => !s.flows_now(),
+        Screen::Season => !s.seasons_now(),
         Screen::Pool | Screen::Mix => s.wrong.is_some() || !s.is_current() || waits,
     });
     if old {

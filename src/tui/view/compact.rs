@@ -52,6 +52,8 @@ pub(super) fn draw(model: &Model, area: Rect, buf: &mut Buffer) {
             }
             if session.screen == Screen::River {
                 lines.extend(super::river::in_short(model, session, width));
+            } else if session.screen == Screen::Season {
+                lines.extend(super::season::in_short(model, session, width));
             } else if session.screen == Screen::Rank {
                 for (line, role) in super::rank::in_short(model, session, width) {
                     lines.push((line, role));

@@ -248,6 +248,11 @@ pub(super) fn status(model: &Model, session: &Session) -> (String, Role) {
         let before = if session.ranked.is_some() { "; what is shown is from before" } else { "" };
         return (format!("ranking {:.0} %{before}, Esc stops", 100.0 * under.done), Role::Warn);
     }
+    if let Some(under) = model.ahead.as_ref().filter(|under| is_long(model, under)) {
+        let before = if session.ahead.is_empty() { "" } else { "; what is shown is from before" };
+        let before = if session.screen == Screen::Season { before } else { "" };
+        return (format!("season {:.0} %{before}, Esc stops", 100.0 * under.done), Role::Warn);
+    }
     let broken = broken_limits(session);
     if session.wrong.is_none() && session.screen == Screen::Mix && broken > 0 {
         let plural = if broken == 1 { "" } else { "s" };

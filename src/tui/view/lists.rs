@@ -50,6 +50,7 @@ fn here(model: &Model) -> Place {
             Screen::Mix => Place::Mix,
             Screen::Rank => Place::Rank,
             Screen::River => Place::River,
+            Screen::Season => Place::Season,
         },
         Stage::Sites { .. } => Place::Sites,
         Stage::Broken { .. } => Place::Problems,

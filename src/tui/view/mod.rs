@@ -8,9 +8,11 @@ mod pool;
 mod rank;
 mod river;
 mod scroll;
+mod season;
 mod water;
 mod write;
 
+use chrono::NaiveDate;
 use ratatui::buffer::Buffer;
 use ratatui::layout::{Position, Rect};
 
@@ -44,6 +46,8 @@ pub enum Hit {
     Mix(usize),
     /// A rule of the river screen.
     Rule(usize),
+    /// A date of the season.
+    Day(NaiveDate),
 }
 
 /// Draws the model; where the cursor stands, while typing.
@@ -69,6 +73,7 @@ pub fn draw(model: &Model, area: Rect, buf: &mut Buffer) -> Option<Position> {
                 Screen::Mix => mix::draw(model, session, parts.body, buf),
                 Screen::Rank => rank::draw(model, session, parts.body, buf),
                 Screen::River => river::draw(model, session, parts.body, buf),
+                Screen::Season => season::draw(model, session, parts.body, buf),
             },
         }
     }
@@ -93,6 +98,7 @@ pub fn hit(model: &Model, column: u16, row: u16) -> Option<Hit> {
             Screen::Mix => mix::hit(model, session, parts.body, at),
             Screen::Rank => rank::hit(model, session, parts.body, at),
             Screen::River => river::hit(model, session, parts.body, at).map(Hit::Rule),
+            Screen::Season => season::hit(model, session, parts.body, at).map(Hit::Day),
         },
         Stage::Opening { .. } | Stage::Broken { .. } => None,
     }
@@ -108,6 +114,12 @@ pub(super) fn rank_rows(model: &Model) -> usize {
 pub(super) fn river_rows(model: &Model) -> usize {
     let area = Rect::new(0, 0, model.size.0, model.size.1);
     model.session().map_or(0, |session| river::last(model, session, frame::parts(model, area).body))
+}
+
+/// The furthest that what scrolls on the season screen can be scrolled.
+pub(super) fn season_rows(model: &Model) -> usize {
+    let area = Rect::new(0, 0, model.size.0, model.size.1);
+    model.session().map_or(0, |session| season::last(model, session, frame::parts(model, area).body))
 }
 
 /// The first line of the rules with which the one chosen is in sight.
@@ -148,5 +160,9 @@ pub(super) fn answer_text(model: &Model) -> Option<String> {
         Screen::Mix => Some(text::mix(&context, session.tried()?)),
         Screen::Rank => session.ranked.as_ref().map(|r| text::rank(&in_units(&r.context), &r.answer)),
         Screen::River => session.downstream.as_ref().map(|d| text::river(&in_units(&d.context), &d.answer)),
+        Screen::Season => {
+            let ahead = session.season_shown()?.ahead;
+            Some(text::season(&in_units(&ahead.context), &ahead.answer))
+        }
     }
 }

@@ -14,14 +14,19 @@ pub(super) fn value(rule: &Target, value: f64, system: System) -> String {
 }
 
 /// How far outside, in the same unit; temperatures as a difference.
-pub(super) fn by(rule: &Target, by: f64, system: System) -> String {
-    let unit = system.unit(Dimension::TemperatureDifference);
+pub(in crate::report::text) fn by(rule: &Target, by: f64, system: System) -> String {
     match rule.statistic {
         Statistic::DaysAbove(_) => super::record::days_of(by),
         Statistic::ShareOfDays(_) => format!("{:.0} %", 100.0 * by),
-        Statistic::DegreeDays { .. } => format!("{} {} days", figure(by, unit, 0), unit.symbol()),
+        Statistic::DegreeDays { .. } => degree_days(by, system),
         _ => show(by, Dimension::TemperatureDifference, system, 1),
     }
+}
+
+/// A sum of degrees over days.
+pub(in crate::report::text) fn degree_days(c_days: f64, system: System) -> String {
+    let unit = system.unit(Dimension::TemperatureDifference);
+    format!("{} {} days", figure(c_days, unit, 0), unit.symbol())
 }
 
 /// The unit of its values in SI, for programs.

@@ -1,10 +1,10 @@
 //! What arrives downstream, in words.
 
 mod ahead;
-mod amounts;
+pub(super) mod amounts;
 mod places;
-mod record;
-mod rules;
+pub(super) mod record;
+pub(super) mod rules;
 
 use std::fmt::Write as _;
 

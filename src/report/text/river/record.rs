@@ -82,7 +82,7 @@ fn say(out: &mut Vec<(String, bool)>, text: &str, width: usize, strong: bool) {
 }
 
 /// `3 of 61 days above, by up to 0.8 C (2026-07-14), 2 in a row; 5 days without enough readings`
-fn tally(tally: &Tally, amount: &dyn Fn(f64) -> String) -> String {
+pub(in crate::report::text) fn tally(tally: &Tally, amount: &dyn Fn(f64) -> String) -> String {
     let mut out = Vec::new();
     for (count, word) in [(tally.over, "above"), (tally.under, "below")] {
         if count > 0 {
@@ -107,7 +107,7 @@ fn days(count: u32) -> String {
 }
 
 /// `1 day`, `3 days`.
-pub(super) fn days_of(count: f64) -> String {
+pub(in crate::report::text) fn days_of(count: f64) -> String {
     if (0.5..1.5).contains(&count) { "1 day".to_owned() } else { format!("{count:.0} days") }
 }
 

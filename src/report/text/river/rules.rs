@@ -106,7 +106,7 @@ fn short(s: &TargetStanding, rule: &Target, system: System) -> String {
 }
 
 /// What a rule asks, with its statistic.
-pub(super) fn asks(rule: &Target, system: System) -> String {
+pub(in crate::report::text) fn asks(rule: &Target, system: System) -> String {
     let statistic = statistic(rule, system);
     if statistic.is_empty() { range(rule, system) } else { format!("{statistic}, {}", range(rule, system)) }
 }

@@ -1,0 +1,97 @@
+//! The calendar: when gates can be used, what is moved, what is within reach.
+
+use crate::mix::limits::Move;
+use crate::problem::harmless;
+use crate::season::{GateLife, GateMoves, Reached};
+use crate::site::Site;
+use crate::tasks::Context;
+use crate::tasks::season::{SeasonAnswer, SeasonRun};
+use crate::units::{Dimension, System, figure, in_system};
+
+use super::super::gates::moved;
+use super::short;
+
+/// Columns of a name, and of a date.
+const NAME: usize = 16;
+const DATE: usize = 12;
+
+/// When every gate can be used: first and last day, why not longer, whom to tell by when.
+pub fn gates(context: &Context, run: &SeasonRun, system: System) -> Vec<String> {
+    run.outcome.gates.iter().map(|life| gate(context.site(), life, system)).collect()
+}
+
+fn gate(site: &Site, life: &GateLife, system: System) -> String {
+    let name = site.outlets.get(life.outlet).map_or_else(String::new, |o| harmless(&o.name));
+    let reason = life.reason.as_ref().map(|(_, words)| harmless(&in_system(words, system)));
+    let Some(first) = life.first_day else {
+        return format!("{name:<NAME$}not on any day: {}", reason.unwrap_or_default());
+    };
+    let Some(last) = life.last_day else {
+        return format!("{name:<NAME$}from {first} to the end");
+    };
+    let book = life.book_by.map_or_else(String::new, |by| format!("; open then: book its crew by {by}"));
+    format!("{name:<NAME$}from {first} to {last}; then {}{book}", reason.unwrap_or_default())
+}
+
+/// What is moved when, by whom, and by when the crew must be told.
+pub fn moves(context: &Context, answer: &SeasonAnswer, run: &SeasonRun, system: System) -> Vec<String> {
+    let outcome = &run.outcome;
+    let mut out = vec![format!(
+        "{} gates moved on {}, {:.1} crew hours",
+        outcome.moves,
+        super::super::days(outcome.calendar.len() as f64),
+        outcome.crew_hours
+    )];
+    out.extend(outcome.calendar.iter().map(|on| {
+        let forced = on.forced.as_ref().map_or_else(String::new, |(_, words)| {
+            format!("; forced by {}", harmless(&in_system(words, system)))
+        });
+        format!("{}  {}{forced}{}", on.date, moved_words(context.site(), &on.moved, system), book(answer, on))
+    }));
+    out
+}
+
+fn moved_words(site: &Site, moves: &[Move], system: System) -> String {
+    moved(site, moves, system).join(", ")
+}
+
+/// By when the crew must be told; said where that day is past already.
+fn book(answer: &SeasonAnswer, on: &GateMoves) -> String {
+    match on.book_by {
+        None => String::new(),
+        Some(by) if by < answer.decides => format!("; book the crew by {by}, WHICH IS PAST"),
+        Some(by) => format!("; book the crew by {by}"),
+    }
+}
+
+/// The range within reach on every day of decision against the range asked: a line each.
+pub fn reach(run: &SeasonRun, system: System) -> Vec<String> {
+    let unit = system.unit(Dimension::Temperature);
+    let c = |c: f64| figure(c, unit, 1);
+    let mut out =
+        vec![format!("{:<DATE$}{:<18}{:<18}, {}", "", "within reach", "asked at the dam", unit.symbol())];
+    out.extend(run.outcome.reached.iter().map(|on| {
+        let within =
+            on.attainable_c.map_or_else(|| "not known".to_owned(), |[a, b]| format!("{} to {}", c(a), c(b)));
+        let asked = match on.range_c() {
+            (None, None) => "nothing".to_owned(),
+            (Some(low), None) => format!("from {}", c(low)),
+            (None, Some(high)) => format!("to {}", c(high)),
+            (Some(low), Some(high)) => format!("{} to {}", c(low), c(high)),
+        };
+        format!("{:<DATE$}{within:<18}{asked:<18}{}", short(on.date), missed(on, system))
+            .trim_end()
+            .to_owned()
+    }));
+    out
+}
+
+/// Where no mix reaches the range.
+fn missed(on: &Reached, system: System) -> String {
+    let by = |by: f64| super::super::step(by.abs(), system);
+    match on.by_c() {
+        Some(over) if over > 0.0 => format!("no mix reaches it: ABOVE by {}", by(over)),
+        Some(under) if under < 0.0 => format!("no mix reaches it: BELOW by {}", by(under)),
+        _ => String::new(),
+    }
+}

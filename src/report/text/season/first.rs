@@ -1,0 +1,119 @@
+//! The few figures people decide by.
+
+use std::fmt::Write as _;
+
+use crate::problem::harmless;
+use crate::season::{Exhausted, Outcome, TargetTally};
+use crate::target::{Tally, Target};
+use crate::tasks::Context;
+use crate::tasks::season::{SeasonAnswer, SeasonRun};
+use crate::units::System;
+
+use super::super::river::record::{days_of, tally};
+use super::super::river::{amounts, rules};
+use super::super::volume;
+use super::exhausted_words;
+
+/// Label and words of each of them.
+pub(super) fn first(context: &Context, answer: &SeasonAnswer, system: System) -> Vec<(&'static str, String)> {
+    let outcome = &answer.main.outcome;
+    let mut out = vec![("Runs out", exhausted(outcome))];
+    out.extend(out_of_reach(answer).map(|words| ("", words)));
+    out.extend(reserve(context, outcome, system).map(|words| ("Reserve", words)));
+    let targets = targets(context, &answer.main, system);
+    for (i, words) in targets.into_iter().enumerate() {
+        out.push((if i == 0 { "Outside" } else { "" }, words));
+    }
+    if let Some(ended) = &answer.main.run.ended {
+        out.push(("STOPS", format!("on {}: {}", ended.date, harmless(&ended.words))));
+    }
+    out
+}
+
+/// When no allowed mix reaches a target any more.
+pub fn exhausted(outcome: &Outcome) -> String {
+    match &outcome.exhausted {
+        Exhausted::On(date) => format!(
+            "from {date} on no allowed mix comes down to the high of the target at the dam at the release of the day, to \
+             the end of the rule or the season (seen on days of decision)"
+        ),
+        Exhausted::NotBy(date) => format!(
+            "not by {date}: on the last day of decision of every target at the dam an allowed mix comes down to its high"
+        ),
+        Exhausted::Unknown(why) => format!("not known: {}", harmless(why)),
+    }
+}
+
+/// `in 3 of 3 cases no mix reaches it after 2026-09-12`; `None` of a single case.
+pub fn out_of_reach(answer: &SeasonAnswer) -> Option<String> {
+    let cases = answer.cases();
+    let known = cases.iter().filter(|r| !matches!(r.outcome.exhausted, Exhausted::Unknown(_))).count();
+    let dates: Vec<_> = cases.iter().filter_map(|r| r.outcome.exhausted.on()).collect();
+    let (first, last) = (dates.iter().min(), dates.iter().max());
+    if known < 2 {
+        return None;
+    }
+    Some(match (first, last) {
+        (Some(first), Some(last)) if first == last => {
+            format!("in {} of {known} cases no mix reaches it from {last} on", dates.len())
+        }
+        (Some(first), Some(last)) => format!(
+            "in {} of {known} cases no mix reaches it from {last} on, in the first of them from {first} on",
+            dates.len()
+        ),
+        _ => format!("in none of {known} cases it runs out"),
+    })
+}
+
+/// When the first reserve is gone into; `None` of a site without.
+pub fn reserve(context: &Context, outcome: &Outcome, system: System) -> Option<String> {
+    let reserves = &context.site().season.reserves;
+    let told = reserves.iter().zip(&outcome.reserves).map(|(reserve, (_, under))| {
+        let what = format!(
+            "{} colder than {} from {:02}-{:02} on",
+            volume(reserve.volume_m3, system),
+            super::super::temperature(reserve.colder_c, system),
+            reserve.from.month,
+            reserve.from.day
+        );
+        match under {
+            Exhausted::On(date) => format!("under it from {date}: {what}"),
+            kept => format!("{}: {what}", exhausted_words(kept)),
+        }
+    });
+    let told: Vec<String> = told.collect();
+    (!told.is_empty()).then(|| told.join("; "))
+}
+
+/// Every target with its days outside in the season.
+pub fn targets(context: &Context, run: &SeasonRun, system: System) -> Vec<String> {
+    let site = context.site();
+    let of = |told: &TargetTally| {
+        let rule = site.targets.get(told.target)?;
+        let range = told.temperature.as_ref().map(|t| counted(rule, t, system));
+        let floor =
+            told.oxygen.as_ref().map(|t| format!("oxygen {}", tally(t, &|by| format!("{by:.1} mg/L"))));
+        let words: Vec<String> = [range, floor].into_iter().flatten().collect();
+        let wish = if rule.soft { ", a wish" } else { "" };
+        let place = harmless(&rule.point);
+        let asks = rules::asks(rule, system);
+        (!words.is_empty())
+            .then(|| format!("{} at {place}{wish} ({asks}): {}", harmless(&rule.name), words.join("; ")))
+    };
+    let told: Vec<String> = run.outcome.targets.iter().filter_map(of).collect();
+    if told.is_empty() { vec!["no target is valid on a day of the season".to_owned()] } else { told }
+}
+
+/// A range's tally, its degree-days with it.
+fn counted(rule: &Target, of: &Tally, system: System) -> String {
+    let mut out = tally(of, &|by| amounts::by(rule, by, system));
+    if of.sum_outside > 0.0 && rule.is_of_temperature() && !rule.statistic.counts_days() {
+        let _ = write!(out, ", {} in all", amounts::degree_days(of.sum_outside, system));
+    }
+    out
+}
+
+/// `34 days`.
+pub(super) fn days(count: u32) -> String {
+    days_of(f64::from(count))
+}

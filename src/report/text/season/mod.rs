@@ -1,0 +1,125 @@
+//! The season ahead, in words: what people decide by first, then what it comes from. The lines are made for the
+//! command and the screens alike.
+
+mod calendar;
+mod cold;
+mod first;
+mod rest;
+mod side;
+
+use chrono::NaiveDate;
+use unicode_width::UnicodeWidthStr;
+
+use crate::problem::{Problem, Weight, harmless};
+use crate::report::flags_of;
+use crate::season::{Exhausted, Run};
+use crate::tasks::Context;
+use crate::tasks::season::SeasonAnswer;
+
+use super::{labelled, list, wrapped};
+
+pub use calendar::{gates, moves, reach};
+pub use cold::{cold, left};
+pub use first::{exhausted, out_of_reach, reserve, targets};
+pub use rest::rest;
+pub use side::{HEADS, Row, columns, meaning, side};
+
+/// Everything but head and caution.
+pub(super) fn body(context: &Context, answer: &SeasonAnswer) -> String {
+    let system = context.system;
+    let mut out = labelled("Season", &spoken_of(answer));
+    out.push_str(&labelled("", &gates_chosen(answer)));
+    for (label, words) in first::first(context, answer, system) {
+        out.push_str(&labelled(label, &words));
+    }
+    out.push('\n');
+    out.push_str(&side::table(context, answer, system));
+    out.push_str(&section("Cold water", cold(context, &answer.main, system)));
+    out.push_str(&section("Gates", gates(context, &answer.main, system)));
+    out.push_str(&section("Moves", moves(context, answer, &answer.main, system)));
+    out.push_str(&section("Within reach on the days of decision", reach(&answer.main, system)));
+    out.push_str(&section("Beside", rest(context, &answer.main, system)));
+    // what is said of a file beside the casts may be a note of the season already
+    let mut cast = flags_of(&context.profile.flags);
+    cast.retain(|flag| flag.weight != Weight::Note && !answer.notes.contains(flag));
+    out.push_str(&list("The cast", &cast, true, system));
+    let notes: Vec<&Problem> = answer.notes.iter().collect();
+    out.push_str(&list("The season", &notes, false, system));
+    out
+}
+
+/// Lines under a heading, each wrapped; nothing without lines.
+fn section(heading: &str, lines: Vec<String>) -> String {
+    if lines.is_empty() {
+        return String::new();
+    }
+    let mut out = format!("{heading}\n");
+    for line in lines {
+        out.push_str(&wrapped_row(&line));
+    }
+    out.push('\n');
+    out
+}
+
+/// A line, wrapped where it is a sentence; the blanks that make columns stay.
+fn wrapped_row(line: &str) -> String {
+    let line = format!("  {line}");
+    if line.width() <= super::WIDTH { format!("{line}\n") } else { wrapped(&line, 4) }
+}
+
+/// `2026-07-14 to 2026-11-30, plan steady (plans/steady.csv), case middling`
+fn spoken_of(answer: &SeasonAnswer) -> String {
+    let main = &answer.main;
+    let last = main.run.days.last().map_or(answer.begins, |day| day.date);
+    format!(
+        "{} to {last}; plan {} ({}), case {}: {}",
+        answer.begins,
+        harmless(&main.run.plan),
+        harmless(&main.plan.file),
+        harmless(&main.run.case),
+        harmless(&main.skies.from)
+    )
+}
+
+/// How the gates are chosen, from when on, and how often.
+fn gates_chosen(answer: &SeasonAnswer) -> String {
+    let held = if answer.decides > answer.begins {
+        format!("what is set now is held until {}, then ", answer.decides)
+    } else {
+        String::new()
+    };
+    let solved = if answer.main.foresight {
+        "; solved with this very case in view: foresight, no evidence"
+    } else {
+        ""
+    };
+    format!(
+        "{held}{}, decided every {}{solved}",
+        harmless(&strategy_words(&answer.main.run)),
+        super::days(f64::from(answer.decide_days))
+    )
+}
+
+/// A strategy in words.
+pub fn strategy_words(run: &Run) -> String {
+    match run.strategy.as_str() {
+        "hold" => "the setting is held as long as no limit stands against it".to_owned(),
+        "best" => "the best mix of the day".to_owned(),
+        "thrift" => "release targets that spare cold water".to_owned(),
+        other => format!("gates as {other} says"),
+    }
+}
+
+/// `2026-09-12`, `not by 2026-11-30`, `not known: why`.
+pub fn exhausted_words(of: &Exhausted) -> String {
+    match of {
+        Exhausted::On(date) => date.to_string(),
+        Exhausted::NotBy(date) => format!("not by {date}"),
+        Exhausted::Unknown(why) => format!("not known: {}", harmless(why)),
+    }
+}
+
+/// A date in a table.
+fn short(date: NaiveDate) -> String {
+    date.format("%m-%d").to_string()
+}

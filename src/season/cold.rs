@@ -1,0 +1,76 @@
+//! The cold water of a season by date: all of it, what the outlets usable on that date can draw, and the reserves.
+//!
+//! Methods: `docs/methods.md`, section 8.
+
+use chrono::Datelike;
+
+use crate::mix;
+use crate::river::Conditions;
+use crate::site::{Reserve, Site};
+use crate::target::YearDay;
+
+use super::gates::usable;
+use super::outcome::{ColdDay, ColdWater, Exhausted, Left};
+use super::run::SeasonDay;
+use super::tally::{TargetTally, tallies};
+
+/// Lowest elevation that the deepest outlet usable on a day draws from at the release of that day, m; `None` where
+/// none is usable.
+pub(super) fn reach_m(site: &Site, day: &SeasonDay) -> Option<f64> {
+    let column = day.layers.column(site)?;
+    let states = mix::outlet_states(site, day.pool_m);
+    let deepest = states.iter().rev().find(|s| usable(site, s.outlet, day.pool_m, day.date).is_ok())?;
+    mix::reach_m(site, &column, deepest.outlet, day.release.flow_m3s)
+}
+
+/// Cold water below a threshold (C) at the end of each day, where each day's outlets reach down to an elevation.
+pub(super) fn by_day(
+    site: &Site,
+    days: &[SeasonDay],
+    reaches_m: &[Option<f64>],
+    threshold_c: f64,
+) -> ColdWater {
+    let one = |(day, reach): (&SeasonDay, &Option<f64>)| {
+        let above = |from: f64| day.layers.colder_m3(&site.pool, threshold_c, from, day.pool_m);
+        ColdDay { date: day.date, total_m3: above(site.pool.bed_m), usable_m3: reach.map(above) }
+    };
+    ColdWater { threshold_c, days: days.iter().zip(reaches_m).map(one).collect() }
+}
+
+/// What was left below a threshold on the first of every month, with the days outside hard targets that came after.
+pub(super) fn left(
+    site: &Site,
+    conditions: &Conditions,
+    cold: Option<&ColdWater>,
+    days: &[SeasonDay],
+) -> Vec<Left> {
+    let of = |(i, day): (usize, &ColdDay)| {
+        let after = tallies(site, conditions, days.get(i + 1..).unwrap_or_default());
+        let hard = after.iter().filter(|t| site.targets.get(t.target).is_some_and(|rule| !rule.soft));
+        Left {
+            date: day.date,
+            usable_m3: day.usable_m3,
+            days_outside: hard.map(TargetTally::days_outside).sum(),
+        }
+    };
+    let first_of_month = |(_, day): &(usize, &ColdDay)| day.date.day() == 1;
+    cold.into_iter().flat_map(|cold| cold.days.iter().enumerate().filter(first_of_month).map(of)).collect()
+}
+
+/// First day on which usable water colder than a reserve asks is less than it keeps, between its day of the year and
+/// the end of that year. Where no outlet is usable nothing of it is left to draw.
+pub(super) fn under(reserve: &Reserve, cold: &ColdWater) -> Exhausted {
+    let Some(last) = cold.days.last() else {
+        return Exhausted::Unknown("the season has no day".to_owned());
+    };
+    let holds = |day: &&ColdDay| YearDay { month: day.date.month(), day: day.date.day() } >= reserve.from;
+    let mut kept = cold.days.iter().filter(holds).peekable();
+    if kept.peek().is_none() {
+        return Exhausted::Unknown(format!(
+            "the reserve begins on {:02}-{:02}, after the season",
+            reserve.from.month, reserve.from.day
+        ));
+    }
+    kept.find(|day| day.usable_m3.unwrap_or(0.0) < reserve.volume_m3)
+        .map_or(Exhausted::NotBy(last.date), |day| Exhausted::On(day.date))
+}

@@ -1,0 +1,74 @@
+//! What the allowed mixes reach on the days of decisions against what the rules at the dam ask, and the day from which
+//! none reaches it any more.
+//!
+//! Methods: `docs/methods.md`, section 8.
+
+use chrono::NaiveDate;
+
+use crate::mix::Day;
+use crate::site::Site;
+use crate::target::Figure;
+
+use super::outcome::{Asks, Exhausted, Reached};
+use super::run::{Run, Setup};
+
+/// A release this much warmer than a rule's high is round-off, C (choice).
+const SAME_C: f64 = 1e-9;
+
+/// What every decision could reach, and what the hard rules at the dam ask on its day.
+pub(super) fn reached(setup: &Setup, site: &Site, run: &Run) -> Vec<Reached> {
+    run.decisions
+        .iter()
+        .map(|decision| Reached {
+            date: decision.date,
+            attainable_c: decision.attainable_c,
+            asks: asks(setup, site, decision.date),
+        })
+        .collect()
+}
+
+/// Ranges that the hard rules at the dam leave to the temperature of a steady day, buffer counted in.
+fn asks(setup: &Setup, site: &Site, date: NaiveDate) -> Vec<Asks> {
+    let day = Day::new(site, date, setup.skies.conditions.clone());
+    let of_dam = |rule: &crate::mix::RuleToday| {
+        let target = site.targets.get(rule.target)?;
+        let today = rule.today.as_ref().ok().filter(|_| rule.point.is_none() && !target.soft)?;
+        let is_temperature = !target.statistic.is_sum() && today.figure != Figure::HourlyChange;
+        let range = (today.low_asked_c(), today.high_c);
+        (is_temperature && range != (None, None)).then_some(Asks {
+            target: rule.target,
+            low_c: range.0,
+            high_c: range.1,
+        })
+    };
+    day.rules(site).iter().filter_map(of_dam).collect()
+}
+
+/// First day of decision from which, to the end of the season or of the rule, no allowed mix comes down to the high
+/// of a hard rule at the dam: the earliest of all rules.
+pub(super) fn exhausted(site: &Site, reached: &[Reached], run: &Run) -> Exhausted {
+    let Some(end) = run.days.last().map(|day| day.date) else {
+        return Exhausted::Unknown("the season has no day".to_owned());
+    };
+    let ends: Vec<Option<NaiveDate>> =
+        (0..site.targets.len()).filter_map(|rule| out_of_reach_since(reached, rule)).collect();
+    match (ends.iter().flatten().min(), &run.ended) {
+        (Some(on), _) => Exhausted::On(*on),
+        (None, Some(ended)) => Exhausted::Unknown(format!("the season stops on {}", ended.date)),
+        (None, None) if ends.is_empty() => {
+            let words = "no hard rule at the dam bounds the temperature from above on a day of decision";
+            Exhausted::Unknown(words.to_owned())
+        }
+        (None, None) => Exhausted::NotBy(end),
+    }
+}
+
+/// From which day of decision on a rule's high is out of reach to its end, if at all; `None` where no decision tells
+/// of the rule.
+fn out_of_reach_since(reached: &[Reached], rule: usize) -> Option<Option<NaiveDate>> {
+    let told = reached.iter().filter_map(|one| {
+        let high_c = one.asks.iter().find(|a| a.target == rule)?.high_c?;
+        Some((one.date, one.attainable_c?[0] > high_c + SAME_C))
+    });
+    told.fold(None, |since, (date, out)| Some(if out { since.flatten().or(Some(date)) } else { None }))
+}

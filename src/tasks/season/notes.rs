@@ -1,0 +1,48 @@
+//! What a season assumes, and what it does not look at.
+
+use crate::problem::{Problem, Weight};
+use crate::tasks::Context;
+use crate::units::say;
+
+use super::asked::{Case, Understood};
+
+/// Notes on the plans, the cases and the model.
+pub(super) fn notes(context: &Context, of: &Understood) -> Vec<Problem> {
+    let mut out: Vec<Problem> = of.plan.notes.clone();
+    out.extend(of.refused.iter().map(|problem| Problem { weight: Weight::Flag, ..problem.clone() }));
+    out.extend(context.rules_off());
+    out.push(Problem::note("cases", cases(&of.cases)));
+    if !context.site().blocks.is_empty() {
+        let words = "the blocks of the day are not looked at: every day releases evenly what the plan asks";
+        out.push(Problem::note("season-blocks", words));
+    }
+    let words = "flow changes that the plan itself asks for are not held against their limits, and no perturbed cases \
+                 stand behind a season: its figures are those of one pool under one weather";
+    out.push(Problem::note("season-not-checked", words));
+    out
+}
+
+/// The cases by their shifts.
+fn cases(cases: &[Case]) -> String {
+    let shifts = |case: &Case| match case {
+        Case::Year(skies) => skies.case.name.clone(),
+        Case::Shifted(case) => {
+            let mut parts = Vec::new();
+            if case.air_c.abs() > 0.0 {
+                parts.push(format!("air {}", say::dc(case.air_c, 1).signed()));
+            }
+            if (case.wind - 1.0).abs() > 0.0 {
+                parts.push(format!("wind {:.0} %", 100.0 * case.wind));
+            }
+            if (case.inflow - 1.0).abs() > 0.0 {
+                parts.push(format!("inflow {:.0} %", 100.0 * case.inflow));
+            }
+            if case.inflow_c.abs() > 0.0 {
+                parts.push(format!("its water {}", say::dc(case.inflow_c, 1).signed()));
+            }
+            let shifts = if parts.is_empty() { "as given".to_owned() } else { parts.join(", ") };
+            format!("{} ({shifts})", case.name)
+        }
+    };
+    format!("cases: {}", cases.iter().map(shifts).collect::<Vec<_>>().join("; "))
+}

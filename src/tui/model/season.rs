@@ -1,0 +1,146 @@
+//! The season screen: what is asked, what is looked at, and the answers there are.
+
+use std::sync::Arc;
+
+use chrono::NaiveDate;
+
+use crate::tasks::season::{SeasonAnswer, SeasonAsked, SeasonRun};
+use crate::tasks::{Changed, Context};
+
+use super::session::Session;
+
+/// Answers kept, so that one may go back to a strategy without waiting (choice).
+const KEPT: usize = 6;
+
+/// A question about the season.
+#[derive(Debug, Clone)]
+pub struct SeasonQuestion {
+    /// The files as opened.
+    pub base: Arc<Context>,
+    /// What the user had changed.
+    pub changed: Changed,
+    /// What is asked.
+    pub asked: SeasonAsked,
+}
+
+impl SeasonQuestion {
+    /// Whether another asks the same.
+    pub fn is(&self, other: &Self) -> bool {
+        self.asked == other.asked && self.is_beside(other)
+    }
+
+    /// Whether another asks of the same files under the same changes.
+    pub fn is_beside(&self, other: &Self) -> bool {
+        Arc::ptr_eq(&self.base, &other.base) && self.changed == other.changed
+    }
+}
+
+/// Seasons with what they were computed for.
+#[derive(Debug, Clone)]
+pub struct Ahead {
+    /// The question.
+    pub question: SeasonQuestion,
+    /// The files with what was changed.
+    pub context: Arc<Context>,
+    /// The answer.
+    pub answer: SeasonAnswer,
+}
+
+impl Ahead {
+    /// The season that something asked speaks of, where it is among these.
+    fn of(&self, asked: &SeasonAsked) -> Option<&SeasonRun> {
+        let (main, own) = (&self.answer.main.run, &self.question.asked);
+        // a name left open means what it meant when these were asked
+        let name = |asked: &Option<String>, own: &Option<String>, main: &str| {
+            if asked == own { Some(main.to_owned()) } else { asked.clone() }
+        };
+        let names = [
+            name(&asked.plan, &own.plan, &main.plan)?,
+            name(&asked.case, &own.case, &main.case)?,
+            name(&asked.strategy, &own.strategy, &main.strategy)?,
+        ];
+        self.answer.runs().find(|r| [&r.run.plan, &r.run.case, &r.run.strategy] == names.each_ref())
+    }
+}
+
+/// What the season screen shows.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
+pub enum SeasonPage {
+    /// The pictures with the readout of a date.
+    #[default]
+    Pictures,
+    /// Cases, plans and strategies side by side.
+    Beside,
+    /// Moves, gates lost and gained, and what else has a date.
+    Calendar,
+}
+
+/// Where the user is on the season screen.
+#[derive(Debug, Clone, Default)]
+pub struct SeasonView {
+    /// Plan, case and strategy looked at, as far as they were chosen.
+    pub chosen: SeasonAsked,
+    /// The date read; the first of the season when absent.
+    pub day: Option<NaiveDate>,
+    /// Where the release is looked at: 0 the dam, then the points of the river.
+    pub place: usize,
+    /// Whether the picture is of oxygen.
+    pub oxygen: bool,
+    /// What is shown.
+    pub page: SeasonPage,
+    /// First line shown of what scrolls there.
+    pub scroll: usize,
+}
+
+/// A season shown.
+#[derive(Debug, Clone, Copy)]
+pub struct SeasonShown<'a> {
+    /// The answer it is of.
+    pub ahead: &'a Ahead,
+    /// The season.
+    pub run: &'a SeasonRun,
+    /// Whether it is not of what is set and chosen now.
+    pub old: bool,
+}
+
+impl Session {
+    /// What the season screen would ask now.
+    pub fn season_question(&self) -> SeasonQuestion {
+        SeasonQuestion {
+            base: Arc::clone(&self.base),
+            changed: self.draft().changed.clone(),
+            asked: self.season.chosen.clone(),
+        }
+    }
+
+    /// The season shown: the one chosen, else the last there is.
+    pub fn season_shown(&self) -> Option<SeasonShown<'_>> {
+        let question = self.season_question();
+        let newest = || self.ahead.iter().rev();
+        let chosen = |ahead: &'_ Ahead| ahead.question.is_beside(&question);
+        let now = newest().filter(|a| chosen(a)).find_map(|a| Some((a, a.of(&question.asked)?)));
+        let before = || newest().next().map(|a| (a, a.of(&question.asked).unwrap_or(&a.answer.main)));
+        let old = now.is_none();
+        now.or_else(before).map(|(ahead, run)| SeasonShown { ahead, run, old })
+    }
+
+    /// Whether the season shown is of what is set and chosen now.
+    pub fn seasons_now(&self) -> bool {
+        self.season_shown().is_some_and(|s| !s.old)
+    }
+
+    /// The answers of the same files and changes as one of them, the newest first.
+    pub fn seasons_beside(&self, ahead: &Ahead) -> Vec<&Ahead> {
+        self.ahead.iter().rev().filter(|a| a.question.is_beside(&ahead.question)).collect()
+    }
+
+    /// Takes an answer; those of other files and changes are dropped.
+    pub fn take_ahead(&mut self, ahead: Ahead) {
+        let beside = |a: &Ahead| a.question.is_beside(&ahead.question) && !a.question.is(&ahead.question);
+        self.ahead.retain(beside);
+        if self.ahead.len() >= KEPT {
+            self.ahead.remove(0);
+        }
+        self.ahead.push(ahead);
+    }
+}
