@@ -20,6 +20,8 @@ mod mix;
 mod rank;
 #[path = "laws/river/mod.rs"]
 mod river;
+#[path = "laws/season/mod.rs"]
+mod season;
 #[path = "laws/series.rs"]
 mod series;
 #[path = "laws/shape.rs"]

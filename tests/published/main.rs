@@ -11,6 +11,7 @@ mod outcome;
 mod pool;
 mod rejected;
 mod river;
+mod season;
 mod series;
 mod series_pandas;
 mod table;

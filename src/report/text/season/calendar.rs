@@ -34,8 +34,8 @@ fn gate(site: &Site, life: &GateLife, system: System) -> String {
 }
 
 /// What is moved when, by whom, and by when the crew must be told.
-pub fn moves(context: &Context, answer: &SeasonAnswer, system: System) -> Vec<String> {
-    let outcome = &answer.main.outcome;
+pub fn moves(context: &Context, answer: &SeasonAnswer, run: &SeasonRun, system: System) -> Vec<String> {
+    let outcome = &run.outcome;
     let mut out = vec![format!(
         "{} gates moved on {}, {:.1} crew hours",
         outcome.moves,
