@@ -3,6 +3,7 @@
 mod balance;
 mod drawdown;
 mod still;
+mod surface;
 
 use chrono::NaiveDate;
 use gatemix::mix::Level;
