@@ -58,6 +58,14 @@ impl Day {
         Self { date, conditions: Some(conditions), asked: Some(asked) }
     }
 
+    /// The same day with other wants of its rules, in the order of [`rules`](Self::rules).
+    #[must_use]
+    pub fn asking(&self, site: &Site, change: impl Fn(&mut RuleToday)) -> Self {
+        let mut asked = self.rules(site).to_vec();
+        asked.iter_mut().for_each(change);
+        Self { asked: Some(asked.into()), ..self.clone() }
+    }
+
     /// What every rule valid on the date asks, in the order of the site.
     pub fn rules(&self, site: &Site) -> Arc<[RuleToday]> {
         self.asked.clone().unwrap_or_else(|| asked(site, self.date, self.conditions.as_deref()))

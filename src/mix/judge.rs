@@ -126,7 +126,7 @@ pub fn judge(
     let release = release(&drawn)?.aerated(site, &drawn, 0.5);
     let spread = perturbed.spread(site, &groups, setting, &release);
     let Held { targets, conflicts, points, flags } = held(site, &[(1.0, &release, &spread)], &day);
-    let limits = limits(site, column, setting, profile.pool_m, day.date, &drawn, &release);
+    let limits = checks(site, column, setting, profile.pool_m, day.date, &drawn, &release);
     let mut warnings: Vec<Problem> = broken(site, &limits).collect();
     warnings.extend(conflicts.iter().map(|conflict| conflict.problem(site)));
     beware::zones(site, column, &drawn, &mut warnings);
@@ -143,8 +143,9 @@ pub fn judge(
     Some(Mix { levels: drawn, release, spread, targets, conflicts, points, limits, not_checked, warnings })
 }
 
-/// Every limit that applies to a setting, by the names of outlets and wells.
-fn limits(
+/// Every limit that applies to a setting under a pool (m) on a date, by the names of outlets and wells; `drawn` and
+/// `release` are what it gives. Limits of a change from another setting are [`limits::change`].
+pub fn checks(
     site: &Site,
     column: &Column,
     setting: &Setting,

@@ -12,6 +12,7 @@ pub mod limits;
 mod links;
 mod place;
 mod reach;
+pub mod split;
 mod standing;
 mod wells;
 
@@ -20,7 +21,7 @@ pub use beware::LOW_OXYGEN_SHARE;
 pub use blend::{Blend, Drawn, blend, draw_levels, overlapping, release, release_joined};
 pub use conflict::{Conflict, conflicts};
 pub use day::{Day, RuleToday, reference_days};
-pub use judge::{Mix, judge, refusals};
+pub use judge::{Mix, checks, judge, refusals};
 pub use levels::{Gate, Level, Seat, Setting, as_one, groups, levels, seat};
 pub use links::Links;
 pub use reach::{OutletState, outlet_states, reach_m};

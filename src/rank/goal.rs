@@ -213,6 +213,20 @@ impl Goal {
         out
     }
 
+    /// Least distance outside the ranges, C.
+    #[inline]
+    pub(super) fn outside_c<const N: usize, const S: usize>(&self, days: &Days<N>) -> [f64; N] {
+        let mut out = [0.0; N];
+        for s in 0..S {
+            let (w, low, high) = (&self.wanted[s], &days.low_c[s], &days.high_c[s]);
+            for i in 0..N {
+                out[i] = most(most(out[i], w.low - high[i]), low[i] - w.high);
+            }
+        }
+        self.afar.outside_c(days, &mut out);
+        out
+    }
+
     /// The keys by which mixes are ordered, whole numbers: the smaller the better; of several mixes none has a smaller
     /// one. Every line goes over all days, so that they are computed side by side.
     #[inline]
@@ -221,16 +235,14 @@ impl Goal {
         days: &Days<N>,
         distances_c: &[f64; N],
     ) -> [f64; N] {
-        let (mut range, mut short) = ([0.0; N], [0.0; N]);
+        let range = self.outside_c::<N, S>(days);
+        let mut short = [0.0; N];
         for s in 0..S {
-            let (w, low, high) = (&self.wanted[s], &days.low_c[s], &days.high_c[s]);
-            let oxygen = &days.oxygen_mg_l[usize::from(s > 0)];
+            let (w, oxygen) = (&self.wanted[s], &days.oxygen_mg_l[usize::from(s > 0)]);
             for i in 0..N {
-                range[i] = most(most(range[i], w.low - high[i]), low[i] - w.high);
                 short[i] = most(short[i], w.floor - oxygen[i]);
             }
         }
-        self.afar.outside_c(days, &mut range);
         self.afar.short_mg_l(days, &mut short);
         let [w_oxygen, w_range, w_far, w_cold, w_moves] = self.weights;
         let mut key = [0.0; N];

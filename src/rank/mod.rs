@@ -10,6 +10,7 @@ mod found;
 mod gain;
 mod goal;
 mod offers;
+mod order;
 mod ranking;
 mod search;
 mod seats;
@@ -41,6 +42,7 @@ use whole::{Told, hopeless, whole_rules};
 pub use afar::Seen;
 pub use curve::{Curve, Curves, Water};
 pub use goal::Criterion;
+pub use order::{Full, Order};
 pub use ranking::{Extreme, Idea, Ranked, Ranking, Rejected};
 pub use search::Progress;
 

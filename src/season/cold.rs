@@ -5,6 +5,7 @@
 use chrono::Datelike;
 
 use crate::mix;
+use crate::river::Conditions;
 use crate::site::{Reserve, Site};
 use crate::target::YearDay;
 
@@ -37,9 +38,14 @@ pub(super) fn by_day(
 }
 
 /// What was left below a threshold on the first of every month, with the days outside hard targets that came after.
-pub(super) fn left(site: &Site, cold: Option<&ColdWater>, days: &[SeasonDay]) -> Vec<Left> {
+pub(super) fn left(
+    site: &Site,
+    conditions: &Conditions,
+    cold: Option<&ColdWater>,
+    days: &[SeasonDay],
+) -> Vec<Left> {
     let of = |(i, day): (usize, &ColdDay)| {
-        let after = tallies(site, days.get(i + 1..).unwrap_or_default());
+        let after = tallies(site, conditions, days.get(i + 1..).unwrap_or_default());
         let hard = after.iter().filter(|t| site.targets.get(t.target).is_some_and(|rule| !rule.soft));
         Left {
             date: day.date,

@@ -4,8 +4,25 @@
 
 use chrono::NaiveDate;
 
-use crate::mix::Asked;
-use crate::mix::limits::Check;
+use crate::mix::limits::{self, Before, Check, Moves};
+use crate::mix::{Asked, Day, Drawn, Setting, checks};
+use crate::profile::Profile;
+use crate::rank::{Criterion, Full, Order, Progress, Question, Ranked, Ranking, Stopped, rank};
+use crate::site::Site;
+
+use super::refine::refined;
+use super::set::{Flowing, flowing};
+
+/// Steps the release is cut into (choice: splits of a tenth).
+pub(super) const STEPS: usize = 10;
+/// Mixes refined (choice).
+const REFINED: usize = 2;
+/// Mixes computed in full until enough of them keep every limit (choice): what the ranking allows by a hair may break
+/// one in full.
+const TRIED: usize = 6;
+/// The usual order: what the targets ask, then cold water, then moves.
+const ORDER: [Criterion; 5] =
+    [Criterion::Oxygen, Criterion::Range, Criterion::Preferred, Criterion::ColdWater, Criterion::Moves];
 
 /// Why a mix was decided on.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -25,7 +42,7 @@ pub struct Decision {
     pub date: NaiveDate,
     /// Why.
     pub why: Why,
-    /// What is set; flows are shares of the release of the day on which it was decided.
+    /// What is set; flows are those of the day on which it was decided, and keep their shares of the release after.
     pub asked: Asked,
     /// Gates moved.
     pub moves: usize,
@@ -33,4 +50,211 @@ pub struct Decision {
     pub crew_hours: f64,
     /// Coldest and warmest release that an allowed mix gives, C.
     pub attainable_c: Option<[f64; 2]>,
+    /// Limits of the change that it breaks, since no mix keeps them.
+    pub past: Vec<Check>,
+}
+
+/// What a mix is decided on: the water and the wants of one day.
+pub(super) struct Choice<'a> {
+    /// The site on the day.
+    pub(super) site: &'a Site,
+    /// Its groups of outlets.
+    pub(super) groups: &'a [Vec<usize>],
+    /// The water.
+    pub(super) profile: &'a Profile,
+    /// What the rules ask.
+    pub(super) day: &'a Day,
+    /// The whole day and its release, m3/s.
+    pub(super) blocks: [(f64, f64); 1],
+    /// What is set before.
+    pub(super) now: Option<&'a Setting>,
+    /// What leaves the dam before.
+    pub(super) before: Before,
+}
+
+/// A mix decided on.
+#[derive(Debug, Clone, PartialEq)]
+pub(super) struct Chosen {
+    /// What is asked.
+    pub(super) asked: Asked,
+    /// Moves from what is set before.
+    pub(super) moves: Moves,
+    /// Coldest and warmest release that an allowed mix gives, C.
+    pub(super) attainable_c: Option<[f64; 2]>,
+    /// Limits of the change that it breaks.
+    pub(super) past: Vec<Check>,
+}
+
+/// Why there is no mix.
+#[derive(Debug, Clone, PartialEq)]
+pub(super) enum NoMix {
+    /// The caller stopped.
+    Cancelled,
+    /// None is allowed: the limit that stands in the way, where one does, and why in words.
+    Allowed(Option<Check>, String),
+}
+
+/// A mix in full.
+pub(super) struct Tried {
+    pub(super) asked: Asked,
+    pub(super) temperature_c: f64,
+    moves: Moves,
+    still: Vec<Check>,
+    change: Vec<Check>,
+    key: f64,
+    off_c: (f64, f64),
+}
+
+impl Choice<'_> {
+    /// The best mix of the day: of the first mixes of the ranking that keep every limit in full, each refined, the one
+    /// that comes first in the order, then the nearer to what is wanted.
+    pub(super) fn best(&self, progress: Progress) -> Result<Chosen, NoMix> {
+        let (ranking, is_free) = self.ranked(progress)?;
+        let order = Order::of(&self.question(self.site));
+        let kept = ranking.ideas(TRIED).into_iter().filter_map(|idea| {
+            let plain = self.tried(idea.best.asked.first()?, &order)?;
+            plain.keeps(is_free).then_some(plain)
+        });
+        let mut found: Vec<Tried> = Vec::new();
+        for plain in kept.take(REFINED) {
+            let better = refined(self, &plain, &order).filter(|tried| tried.keeps(is_free));
+            found.push(plain);
+            found.extend(better);
+        }
+        let first = found.into_iter().reduce(|best, other| if other.before(&best) { other } else { best });
+        first.map_or_else(|| Err(none_allowed(self.site, &ranking)), |best| Ok(self.chosen(best, &ranking)))
+    }
+
+    /// Every mix allowed at splits of a tenth, where each set of open outlets allows no more than one and they are no
+    /// more than `most`: then each is worth following for itself.
+    pub(super) fn every(&self, most: usize, progress: Progress) -> Result<Option<Vec<Chosen>>, NoMix> {
+        let (ranking, is_free) = self.ranked(progress)?;
+        if ranking.allowed != ranking.mixes.len() as u64 || ranking.mixes.len() > most {
+            return Ok(None);
+        }
+        let order = Order::of(&self.question(self.site));
+        let tried = ranking.mixes.iter().filter_map(|mix| self.tried(mix.asked.first()?, &order));
+        let all: Vec<Chosen> = tried.filter(|t| t.keeps(is_free)).map(|t| self.chosen(t, &ranking)).collect();
+        if all.is_empty() { Err(none_allowed(self.site, &ranking)) } else { Ok(Some(all)) }
+    }
+
+    /// What is set whatever the ranking says, with what could be reached instead.
+    pub(super) fn given(&self, asked: Asked, progress: Progress) -> Result<Chosen, NoMix> {
+        let (ranking, _) = self.ranked(progress)?;
+        let order = Order::of(&self.question(self.site));
+        let tried = self.tried(&asked, &order);
+        tried.map(|tried| self.chosen(tried, &ranking)).ok_or_else(|| none_allowed(self.site, &ranking))
+    }
+
+    /// The ranking, and whether it is one without the limits of the change since no mix keeps them.
+    fn ranked(&self, progress: Progress) -> Result<(Ranking, bool), NoMix> {
+        let ranked = |site: &Site| {
+            rank(&self.question(site), progress).map_err(|stopped| match stopped {
+                Stopped::Cancelled => NoMix::Cancelled,
+                Stopped::Refused(problem) => NoMix::Allowed(None, problem.words),
+            })
+        };
+        let strict = ranked(self.site)?;
+        if strict.mixes.is_empty() {
+            Ok((ranked(&without_change(self.site))?, true))
+        } else {
+            Ok((strict, false))
+        }
+    }
+
+    fn question<'b>(&'b self, site: &'b Site) -> Question<'b> {
+        Question {
+            site,
+            profile: self.profile,
+            day: self.day,
+            blocks: &self.blocks,
+            now: self.now,
+            before: self.before,
+            steps: STEPS,
+            order: &ORDER,
+            without: &[],
+        }
+    }
+
+    /// The water that is asked, in full.
+    pub(super) fn flowing(&self, asked: &Asked) -> Option<Flowing> {
+        flowing(self.site, self.groups, &self.profile.column, asked, self.profile.pool_m)
+    }
+
+    /// A mix in full. `None` where nothing flows.
+    pub(super) fn tried(&self, asked: &Asked, order: &Order) -> Option<Tried> {
+        let Flowing { setting, drawn, release } = self.flowing(asked)?;
+        let column = &self.profile.column;
+        let still = checks(self.site, column, &setting, self.profile.pool_m, self.day.date, &drawn, &release);
+        let mut change = Vec::new();
+        let moves = self.now.map_or_else(Moves::default, |now| {
+            limits::change(self.site, now, self.before, &setting, &release, &mut change)
+        });
+        let cold_share = self.site.cold_water_c.first().map_or(0.0, |&cold_c| {
+            let share = |d: &Drawn| d.zone.map_or(0.0, |zone| zone.colder_share(column, cold_c));
+            drawn.iter().map(|d| d.level.sink.flow_m3s * share(d)).sum::<f64>() / release.flow_m3s
+        });
+        let (temperature_c, oxygen_mg_l) = (release.temperature_c, release.oxygen_below_mg_l);
+        Some(Tried {
+            asked: asked.clone(),
+            temperature_c,
+            key: order.key(&Full { temperature_c, oxygen_mg_l, cold_share }, &moves),
+            off_c: order.off_c(temperature_c),
+            moves,
+            still,
+            change,
+        })
+    }
+
+    fn extremes_c(&self, ranking: &Ranking) -> Option<[f64; 2]> {
+        let in_full = |mix: &Ranked| Some(self.flowing(mix.asked.first()?)?.release.temperature_c);
+        let [coldest, warmest] = ranking.attainable_c.as_ref()?.each_ref().map(|e| in_full(&e.mix));
+        Some([coldest?, warmest?])
+    }
+
+    fn chosen(&self, tried: Tried, ranking: &Ranking) -> Chosen {
+        let extremes = self.extremes_c(ranking);
+        // what is chosen is attainable: it may lie a hair beyond what splits of a tenth give
+        let attainable_c =
+            extremes.map(|[low, high]| [low.min(tried.temperature_c), high.max(tried.temperature_c)]);
+        let past = tried.change.into_iter().filter(Check::broken).collect();
+        Chosen { asked: tried.asked, moves: tried.moves, attainable_c, past }
+    }
+}
+
+impl Tried {
+    /// Whether it keeps every limit; where no mix keeps those of the change, every other.
+    pub(super) fn keeps(&self, is_free: bool) -> bool {
+        !self.still.iter().any(Check::broken) && (is_free || !self.change.iter().any(Check::broken))
+    }
+
+    /// Whether it comes before another.
+    fn before(&self, other: &Self) -> bool {
+        let order = self.key.total_cmp(&other.key);
+        order
+            .then(self.off_c.0.total_cmp(&other.off_c.0))
+            .then(self.off_c.1.total_cmp(&other.off_c.1))
+            .is_lt()
+    }
+}
+
+/// The site without its limits of a change: moves, crew hours, rates, gates not to be moved under flow.
+fn without_change(site: &Site) -> Site {
+    let mut free = site.clone();
+    let limits = &mut free.limits;
+    (limits.max_moves, limits.max_crew_hours) = (None, None);
+    (limits.flow_change_m3s_per_hour, limits.flow_change_m3s_per_day) = (None, None);
+    (limits.temperature_change_c_per_hour, limits.temperature_change_c_per_day) = (None, None);
+    free.outlets.iter_mut().for_each(|o| o.moves_under_flow = None);
+    free
+}
+
+/// The limit that rejects the most mixes.
+fn none_allowed(site: &Site, ranking: &Ranking) -> NoMix {
+    let most = ranking.rejected.iter().max_by_key(|r| r.count).map(|r| r.check);
+    let words = most.map_or_else(
+        || "no outlet can give the release".to_owned(),
+        |check| format!("every mix breaks a limit; most often: {}", check.words(site)),
+    );
+    NoMix::Allowed(most, words)
 }

@@ -6,12 +6,16 @@
 //!
 //! Methods: `docs/methods.md`, section 8.
 
+mod ahead;
+mod aims;
 mod balance;
 mod beware;
 mod cold;
 mod decide;
 mod diffusion;
+mod exact;
 mod gates;
+mod going;
 mod inflow;
 mod layers;
 mod mixing;
@@ -20,13 +24,18 @@ mod outflow;
 mod oxygen;
 mod plan;
 mod reached;
+mod refine;
 mod reshape;
 mod run;
+mod search;
+mod set;
 mod skies;
 mod stages;
 mod step;
+mod strategy;
 mod surface;
 mod tally;
+mod thrift;
 
 pub use balance::{Balance, Terms};
 pub use decide::{Decision, Why};
@@ -43,5 +52,4 @@ pub use plan::{Plan, PlanDay, RawPlan, RawPlanRow, Schedule};
 pub use run::{Choosing, Ended, Run, SeasonDay, Setup, run};
 pub use skies::{Skies, Sky};
 pub use step::{Forcing, Inflow, MOST_OPEN, Stepped, Unbalanced, day};
-pub use surface::{LIGHT_AT_SURFACE, extinction_per_m, light_left};
 pub use tally::{Score, TargetTally, tallies};

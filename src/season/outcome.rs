@@ -248,7 +248,7 @@ pub fn outcome(setup: &Setup, run: &Run) -> Outcome {
     let cold: Vec<ColdWater> = site.cold_water_c.iter().map(|&c| colder(c)).collect();
     let largest = |of: fn(&SeasonDay) -> f64| days.iter().map(of).fold(0.0, f64::max);
     Outcome {
-        left: cold::left(site, cold.first(), days),
+        left: cold::left(site, &setup.skies.conditions, cold.first(), days),
         cold,
         under_reserve: first(reserves.iter().map(|r| &r.1)),
         reserves,
@@ -256,8 +256,8 @@ pub fn outcome(setup: &Setup, run: &Run) -> Outcome {
         reached,
         gates: gates::lives(site, days),
         calendar: gates::moves(site, setup, run),
-        targets: tallies(site, days),
-        score: Score::of(site, run),
+        targets: tallies(site, &setup.skies.conditions, days),
+        score: Score::of(setup, run),
         stages: stages::stages(site, days),
         moves: run.decisions.iter().map(|d| d.moves).sum(),
         crew_hours: run.decisions.iter().map(|d| d.crew_hours).sum(),

@@ -2,7 +2,6 @@
 //!
 //! Methods: `docs/methods.md`, section 8.
 
-use std::ops::ControlFlow;
 use std::sync::Arc;
 
 use chrono::NaiveDate;
@@ -10,14 +9,17 @@ use chrono::NaiveDate;
 use crate::mix::limits::Check;
 use crate::mix::{Blend, Drawn, Gate, Setting};
 use crate::profile::Profile;
+use crate::rank::Progress;
 use crate::river::Figures;
 use crate::site::Strategy;
 
 use super::balance::Balance;
 use super::decide::Decision;
+use super::going::Going;
 use super::layers::Layers;
 use super::plan::{Plan, Schedule};
 use super::skies::Skies;
+use super::thrift::thrift;
 
 /// How the gates of a run are chosen.
 #[derive(Debug, Clone)]
@@ -28,6 +30,8 @@ pub enum Choosing {
     Schedule(Arc<Schedule>),
     /// The shares of the allowed range that thrift found on another case, one for each decision: re-scored here.
     Aims(Arc<Vec<f64>>),
+    /// The gates that thrift found on another case where it could try every one: followed here.
+    Found(Arc<Schedule>),
 }
 
 /// What a run is made from.
@@ -108,8 +112,32 @@ pub struct Run {
     pub aims: Option<Arc<Vec<f64>>>,
 }
 
-/// Runs a season. `progress` is told the share of its days done and may stop it: `None` then.
-pub fn run(setup: &Setup, progress: &(dyn Fn(f64) -> ControlFlow<()> + Sync)) -> Option<Run> {
-    let _ = (setup, progress);
-    None
+/// Runs a season. `progress` is told the share of its days done and may stop it: `None` then, and where the cast shows
+/// no water.
+pub fn run(setup: &Setup, progress: Progress) -> Option<Run> {
+    match setup.choosing {
+        Choosing::By(Strategy::Thrift) => thrift(setup, progress),
+        _ => Going::new(setup)?.to_the_end(progress),
+    }
+}
+
+impl Run {
+    /// How its gates are chosen again in another case: what thrift found here is followed there, everything else is
+    /// chosen anew.
+    pub fn again(&self, choosing: &Choosing) -> Choosing {
+        match (&self.aims, choosing) {
+            (Some(aims), _) => Choosing::Aims(aims.clone()),
+            (None, Choosing::By(Strategy::Thrift)) => Choosing::Found(Arc::new(self.schedule())),
+            (None, other) => other.clone(),
+        }
+    }
+
+    /// What was set, as a schedule.
+    pub fn schedule(&self) -> Schedule {
+        let of = |decision: &Decision| {
+            let day = self.days.iter().find(|day| day.date == decision.date)?;
+            Some((decision.date, day.gates.clone()))
+        };
+        Schedule { file: String::new(), changes: self.decisions.iter().filter_map(of).collect() }
+    }
 }

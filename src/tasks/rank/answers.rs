@@ -1,8 +1,9 @@
 //! Answers beyond the list: the trade between temperature and oxygen, lost gates, the exact split, the least release,
 //! and what more of it does.
 
+use crate::mix::Gate;
 use crate::mix::limits::Check;
-use crate::mix::{Asked, Gate};
+use crate::mix::split::Part;
 use crate::rank::{Criterion, Progress, Question, Ranked, Ranking, Seen, rank as search};
 use crate::tasks::solve::{preferred_c, roots};
 
@@ -61,15 +62,6 @@ pub struct Root {
     pub oxygen_mg_l: Option<f64>,
     /// Limits that it breaks, where it was held against any.
     pub breaks: Vec<Check>,
-}
-
-/// A part of the dam between which and another the release is split.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
-pub enum Part {
-    /// An outlet on no well.
-    Outlet(usize),
-    /// A well, its gates as they are.
-    Well(usize),
 }
 
 /// The splits of two parts of a mix that give the preferred temperature.
@@ -225,7 +217,7 @@ impl Answers<'_> {
             return None;
         }
         let (mix, between, flows) = self.ranking.mixes.iter().find_map(|mix| {
-            let mut parts = parts(mix.asked.first()?);
+            let mut parts = mix.asked.first()?.parts();
             parts.sort_by(|a, b| b.1.total_cmp(&a.1));
             let [a, b] = parts.get(..2)?.first_chunk::<2>()?;
             Some((mix, [a.0, b.0], [a.1, b.1]))
@@ -233,12 +225,12 @@ impl Answers<'_> {
         let asked = mix.asked.first()?;
         let both: f64 = flows.iter().sum();
         let water = |share: f64| {
-            let asked = with(asked, between, [both * share, both * (1.0 - share)]);
+            let asked = asked.with(between, [both * share, both * (1.0 - share)]);
             self.kitchen.water(&self.kitchen.resolved(&asked))
         };
         let (mut roots, bracket_c) = roots(&water, both, preferred_c);
         for root in &mut roots {
-            let setting = self.kitchen.resolved(&with(asked, between, root.flows_m3s));
+            let setting = self.kitchen.resolved(&asked.with(between, root.flows_m3s));
             let broken = self.kitchen.now(&setting).map(|shown| shown.limits);
             root.breaks = broken.into_iter().flatten().filter(Check::broken).collect();
         }
@@ -295,7 +287,7 @@ impl Answers<'_> {
     pub(super) fn pocket(&self) -> Option<Pocket> {
         let &[(_, release_m3s)] = self.question.blocks else { return None };
         let asked = self.ranking.mixes.first()?.asked.first()?;
-        let at = |times: f64| self.kitchen.water(&self.kitchen.resolved(&scaled(asked, times))).map(|w| w.0);
+        let at = |times: f64| self.kitchen.water(&self.kitchen.resolved(&asked.scaled(times))).map(|w| w.0);
         let here = at(1.0)?;
         let slope = (at(1.0 + POCKET_STEP)? - at(1.0 - POCKET_STEP)?) / (2.0 * POCKET_STEP);
         let near =
@@ -311,32 +303,4 @@ impl Answers<'_> {
         };
         Some(Pocket { c_per_m3s: slope / release_m3s, from_m3s: reach(-1.0, low), to_m3s: reach(1.0, high) })
     }
-}
-
-/// Parts of what is asked with their flows, m3/s: outlets on no well, and wells.
-fn parts(asked: &Asked) -> Vec<(Part, f64)> {
-    let direct = asked.direct.iter().map(|g| (Part::Outlet(g.outlet), g.flow_m3s));
-    direct.chain(asked.totals.iter().map(|t| (Part::Well(t.0), t.1))).collect()
-}
-
-/// The same with other flows of two parts.
-fn with(asked: &Asked, parts: [Part; 2], flows_m3s: [f64; 2]) -> Asked {
-    let mut out = asked.clone();
-    for (part, flow) in parts.into_iter().zip(flows_m3s) {
-        match part {
-            Part::Outlet(outlet) => {
-                out.direct.iter_mut().filter(|g| g.outlet == outlet).for_each(|g| g.flow_m3s = flow);
-            }
-            Part::Well(well) => out.totals.iter_mut().filter(|t| t.0 == well).for_each(|t| t.1 = flow),
-        }
-    }
-    out
-}
-
-/// Everything asked, so many times.
-fn scaled(asked: &Asked, times: f64) -> Asked {
-    let mut out = asked.clone();
-    out.direct.iter_mut().for_each(|g| g.flow_m3s *= times);
-    out.totals.iter_mut().for_each(|t| t.1 *= times);
-    out
 }

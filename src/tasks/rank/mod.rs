@@ -18,7 +18,8 @@ use crate::units::say;
 use super::words::Word;
 use super::{Context, Failure, now_setting, setting};
 
-pub use answers::{Least, Lost, Part, Pocket, PreferredSplit, Root, Trade};
+pub use crate::mix::split::Part;
+pub use answers::{Least, Lost, Pocket, PreferredSplit, Root, Trade};
 pub use asked::{RankAsked, ReleaseFrom};
 pub use shown::{Shown, ShownPart, Unsure};
 

@@ -37,7 +37,7 @@ impl Table<'_> {
         let skies = self.skies(&of.plan, &of.case).map_err(|problem| self.refused(problem))?;
         let mut main =
             self.run(&(of.plan.clone(), skies, of.choosing.clone()), &|done| progress(MAIN_SHARE * done))?;
-        main.foresight = main.run.aims.is_some();
+        main.foresight = matches!(of.choosing, Choosing::By(Strategy::Thrift));
         Ok(main)
     }
 
@@ -51,13 +51,13 @@ impl Table<'_> {
     ) -> Result<Vec<SeasonRun>, Failure> {
         let of = self.understood;
         // what was solved on one case is scored on the others, not solved again
-        let again = main.run.aims.clone().map_or_else(|| of.choosing.clone(), Choosing::Aims);
+        let again = main.run.again(&of.choosing);
         let mut jobs: Vec<Job> = Vec::new();
         let mut put = |plan: &Arc<Plan>, case: &Case, choosing: Choosing| match self.skies(plan, case) {
             Ok(skies) => jobs.push((plan.clone(), skies, choosing)),
             Err(problem) => notes.push(Problem::flag("season-left-out", problem.words, problem.cure)),
         };
-        for case in of.cases.iter().filter(|case| **case != of.case) {
+        for case in of.cases.iter().filter(|case| case.name() != of.case.name()) {
             put(&of.plan, case, again.clone());
         }
         for plan in &of.other_plans {

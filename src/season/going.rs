@@ -1,0 +1,331 @@
+//! A season under way: day after day what is set, what is decided, and what the pool then does.
+//!
+//! Methods: `docs/methods.md`, section 8.
+
+use std::sync::Arc;
+
+use chrono::{NaiveDate, NaiveTime};
+
+use crate::mix::limits::{Before, Check};
+use crate::mix::{Asked, Blend, Day, checks, groups, release};
+use crate::profile::{Column, Profile};
+use crate::rank::Progress;
+use crate::river::{self, Figures};
+use crate::site::Site;
+use crate::target::DAM;
+
+use super::ahead::ahead;
+use super::aims::asking;
+use super::decide::{Choice, Chosen, Decision, NoMix, Why};
+use super::layers::Layers;
+use super::plan::PlanDay;
+use super::run::{Ended, Run, SeasonDay, Setup};
+use super::set::{Flowing, flowing};
+use super::step::{Forcing, Inflow, day};
+use super::strategy::{Wants, is_due, name, wants};
+
+/// Length of the day, s; exact.
+const DAY_S: f64 = 86_400.0;
+
+/// A season under way.
+#[derive(Clone)]
+pub(super) struct Going<'a> {
+    pub(super) setup: &'a Setup<'a>,
+    /// The site under the air of the case, with the outages of the plan and the inflow of the day.
+    site: Site,
+    groups: Arc<Vec<Vec<usize>>>,
+    ahead: Arc<Vec<PlanDay>>,
+    layers: Layers,
+    /// The first day on which gates may be moved: at once where nobody knows how they stand.
+    pub(super) decides: NaiveDate,
+    /// What is set, with the flows of the day it was decided.
+    asked: Option<Asked>,
+    /// Temperature of the last release, C.
+    last_c: Option<f64>,
+    /// Whether what arrives at the points is wanted.
+    to_the_points: bool,
+    pub(super) run: Run,
+}
+
+/// A day before anything is decided.
+#[derive(Clone)]
+pub(super) struct Morning {
+    plan: PlanDay,
+    release_m3s: f64,
+    profile: Profile,
+    /// What is set, as it would flow today, and the first limit it breaks.
+    held: Option<(Flowing, Option<Check>)>,
+}
+
+impl Morning {
+    /// The day.
+    pub(super) fn date(&self) -> NaiveDate {
+        self.plan.date
+    }
+}
+
+impl<'a> Going<'a> {
+    /// A season before its first day. `None` for a cast without water.
+    pub(super) fn new(setup: &'a Setup<'a>) -> Option<Self> {
+        let mut site = (*setup.skies.site).clone();
+        site.limits.outages.extend(setup.plan.outages.iter().cloned());
+        // how much leaves in all, and how far the pool falls, is the plan's: no mix changes it
+        (site.release.min_m3s, site.release.max_m3s, site.limits.drawdown_m_per_day) = (None, None, None);
+        let layers = Layers::of_profile(&site, setup.start, site.season.layer_m)?;
+        let rules = site.targets.iter().map(|t| t.point.as_str());
+        let mut points = rules.chain(site.season.stages.iter().map(|s| s.point.as_str()));
+        let to_the_points = site.river.is_some() && points.any(|point| point != DAM);
+        let run = Run {
+            plan: setup.plan.name.clone(),
+            case: setup.skies.case.name.clone(),
+            strategy: name(&setup.choosing).to_owned(),
+            start: layers.clone(),
+            days: Vec::new(),
+            decisions: Vec::new(),
+            ended: None,
+            aims: None,
+        };
+        Some(Self {
+            ahead: Arc::new(ahead(setup, layers.pool_m(&site.pool))),
+            groups: Arc::new(groups(&site)),
+            decides: if setup.now.is_some() { setup.decides } else { setup.begins },
+            asked: setup.now.map(|now| Asked::of(&site, now)),
+            last_c: None,
+            to_the_points,
+            layers,
+            site,
+            run,
+            setup,
+        })
+    }
+
+    /// Whether a day is still to come.
+    pub(super) fn is_on(&self) -> bool {
+        self.run.ended.is_none() && self.run.days.len() < self.ahead.len()
+    }
+
+    /// Share of the days gone through.
+    pub(super) fn share_done(&self) -> f64 {
+        self.run.days.len() as f64 / self.ahead.len().max(1) as f64
+    }
+
+    /// Goes through the days that are left. `None` where the caller stops it.
+    pub(super) fn to_the_end(mut self, progress: Progress) -> Option<Run> {
+        while self.is_on() {
+            if progress(self.share_done()).is_break() {
+                return None;
+            }
+            self.next_day(progress)?;
+        }
+        Some(self.run)
+    }
+
+    /// Goes through one day. `None` where the caller stops it.
+    fn next_day(&mut self, progress: Progress) -> Option<()> {
+        let Some(morning) = self.morning() else { return Some(()) };
+        let decided = self.why(&morning).map(|why| self.decision(&morning, why, progress)).transpose();
+        match decided {
+            Ok(decided) => self.pass(morning, decided),
+            Err(NoMix::Cancelled) => return None,
+            Err(NoMix::Allowed(check, words)) => self.end(morning.date(), words, check),
+        }
+        Some(())
+    }
+
+    /// The next day before anything is decided; the season ends where it cannot begin.
+    pub(super) fn morning(&mut self) -> Option<Morning> {
+        let plan = *self.ahead.get(self.run.days.len())?;
+        self.site.inflow_m3s = Some(plan.inflow_m3s);
+        let release_m3s = self.release_m3s(&plan);
+        if release_m3s <= 0.0 {
+            self.end(
+                plan.date,
+                "nothing is left to release: the pool is to rise by all that comes in".into(),
+                None,
+            );
+            return None;
+        }
+        let at = plan.date.and_time(NaiveTime::MIN).and_local_timezone(self.site.offset).single();
+        let Some(profile) = at.and_then(|at| self.layers.profile(&self.site, at)) else {
+            self.end(plan.date, "the pool holds no water".into(), None);
+            return None;
+        };
+        let held = self.asked.as_ref().and_then(|asked| self.flows(asked, release_m3s, &profile, plan.date));
+        if self.last_c.is_none() {
+            self.last_c = held.as_ref().map(|held| held.0.release.temperature_c);
+        }
+        Some(Morning { plan, release_m3s, profile, held })
+    }
+
+    /// What a day is to release, m3/s.
+    fn release_m3s(&self, plan: &PlanDay) -> f64 {
+        let by_pool = |to_m: f64| {
+            let gain_m3 = self.site.pool.volume_m3(to_m) - self.layers.volume_m3();
+            (plan.inflow_m3s - gain_m3 / DAY_S).max(0.0)
+        };
+        plan.release_m3s.or_else(|| plan.pool_m.map(by_pool)).unwrap_or_default()
+    }
+
+    /// What is asked, as it would flow on a day, and the first limit it breaks. `None` where it gives no water.
+    fn flows(
+        &self,
+        asked: &Asked,
+        release_m3s: f64,
+        profile: &Profile,
+        date: NaiveDate,
+    ) -> Option<(Flowing, Option<Check>)> {
+        let (site, pool_m) = (&self.site, profile.pool_m);
+        let asked = asked.at_release(site, release_m3s, pool_m);
+        let flowing = flowing(site, &self.groups, &profile.column, &asked, pool_m)?;
+        let Flowing { setting, drawn, release } = &flowing;
+        let checks = checks(site, &profile.column, setting, pool_m, date, drawn, release);
+        let broken = checks.into_iter().find(Check::broken);
+        Some((flowing, broken))
+    }
+
+    /// Why something is decided on a day; `None` where what is set stays.
+    pub(super) fn why(&self, morning: &Morning) -> Option<Why> {
+        let date = morning.date();
+        match (&morning.held, self.run.decisions.is_empty()) {
+            (Some(_), true) if date < self.decides => None,
+            (_, true) => Some(Why::Begin),
+            (None, _) => Some(Why::Due),
+            (Some(_), _) if is_due(self.setup, self.decides, date) => Some(Why::Due),
+            (Some((_, broken)), _) => broken.map(Why::Forced),
+        }
+    }
+
+    /// What is decided on a day for a reason.
+    fn decision(&self, morning: &Morning, why: Why, progress: Progress) -> Result<Decision, NoMix> {
+        let date = morning.date();
+        let wanted = match wants(self.setup, self.decides, &self.site, date, why) {
+            Wants::Best(aim) => return self.best(morning, why, aim, progress),
+            Wants::Stay => self.asked.clone(),
+            Wants::These(asked) => Some(asked),
+        };
+        let flows = |asked: &Asked| self.flows(asked, morning.release_m3s, &morning.profile, date);
+        let found = wanted.and_then(|asked| Some((flows(&asked)?, asked)));
+        match found {
+            Some(((_, None), asked)) => {
+                let asked = asked.at_release(&self.site, morning.release_m3s, morning.profile.pool_m);
+                let chosen = self.on(morning, 0.0, |choice| choice.given(asked, progress))?;
+                Ok(decision(date, why, chosen))
+            }
+            Some(((_, Some(check)), _)) => self.best(morning, Why::Forced(check), 0.0, progress),
+            None => self.best(morning, why, 0.0, progress),
+        }
+    }
+
+    fn best(&self, morning: &Morning, why: Why, aim: f64, progress: Progress) -> Result<Decision, NoMix> {
+        let chosen = self.on(morning, aim, |choice| choice.best(progress))?;
+        Ok(decision(morning.date(), why, chosen))
+    }
+
+    /// Every decision there is, where they are no more than so many.
+    pub(super) fn every(
+        &self,
+        morning: &Morning,
+        why: Why,
+        most: usize,
+        progress: Progress,
+    ) -> Result<Option<Vec<Decision>>, NoMix> {
+        let every = self.on(morning, 0.0, |choice| choice.every(most, progress))?;
+        let decisions = |every: Vec<Chosen>| {
+            every.into_iter().map(|chosen| decision(morning.date(), why, chosen)).collect()
+        };
+        Ok(every.map(decisions))
+    }
+
+    /// What a mix of the day is decided on, with an aim.
+    fn on<T>(&self, morning: &Morning, aim: f64, ask: impl FnOnce(&Choice) -> T) -> T {
+        let day = Day::new(&self.site, morning.date(), self.setup.skies.conditions.clone());
+        let choice = Choice {
+            site: &self.site,
+            groups: &self.groups,
+            profile: &morning.profile,
+            day: &asking(day, &self.site, aim),
+            blocks: [(1.0, morning.release_m3s)],
+            now: morning.held.as_ref().map(|held| &held.0.setting),
+            // the change of the flow is the plan's
+            before: Before { flow_m3s: Some(morning.release_m3s), temperature_c: self.last_c },
+        };
+        ask(&choice)
+    }
+
+    /// Goes through a day with what was decided, or with what is set.
+    pub(super) fn pass(&mut self, morning: Morning, decided: Option<Decision>) {
+        let date = morning.date();
+        let Morning { plan, release_m3s, profile, mut held } = morning;
+        if let Some(decision) = decided {
+            held = self.flows(&decision.asked, release_m3s, &profile, date);
+            self.asked = Some(decision.asked.clone());
+            self.run.decisions.push(decision);
+        }
+        let Some((flowing, _)) = held else {
+            return self.end(date, "what is set gives no water".into(), None);
+        };
+        let surface = self.layers.layers.last();
+        let forcing = Forcing {
+            date,
+            sky: self.setup.skies.days.get(&date).copied(),
+            inflow: Inflow {
+                flow_m3s: plan.inflow_m3s,
+                temperature_c: plan.inflow_c,
+                oxygen_mg_l: plan.inflow_mg_l,
+                salt_g_per_kg: plan
+                    .inflow_salt_g_per_kg
+                    .or(surface.map(|l| l.salt_g_per_kg))
+                    .unwrap_or_default(),
+                suspended_mg_l: plan
+                    .inflow_suspended_mg_l
+                    .or(surface.map(|l| l.suspended_mg_l))
+                    .unwrap_or_default(),
+            },
+        };
+        let levels = |_: &Column, _: f64| flowing.drawn.iter().map(|d| d.level.clone()).collect();
+        let stepped = match day(&mut self.layers, &self.site, &forcing, &levels) {
+            Ok(stepped) => stepped,
+            Err(unbalanced) => return self.end(date, unbalanced.words, None),
+        };
+        let Some(left) = release(&stepped.drawn) else {
+            return self.end(date, "what is set gives no water".into(), None);
+        };
+        let left = left.aerated(&self.site, &stepped.drawn, 0.5);
+        self.last_c = Some(left.temperature_c);
+        self.run.days.push(SeasonDay {
+            date,
+            pool_m: self.layers.pool_m(&self.site.pool),
+            inflow_m3s: plan.inflow_m3s,
+            gates: flowing.setting.gates,
+            drawn: stepped.drawn,
+            release: left,
+            points: self.arriving(date, &left),
+            layers: self.layers.clone(),
+            balance: stepped.balance,
+            overturned: stepped.overturned,
+        });
+    }
+
+    /// What arrives at the points of the river, where any is spoken of.
+    fn arriving(&self, date: NaiveDate, release: &Blend) -> Option<Vec<Figures>> {
+        let part = river::Part {
+            hours: 24.0,
+            flow_m3s: release.flow_m3s,
+            temperature_c: release.temperature_c,
+            oxygen_mg_l: release.oxygen_below_mg_l,
+        };
+        let conditions = &self.setup.skies.conditions;
+        let course =
+            self.to_the_points.then(|| river::course(&self.site, conditions, date, &[part])).flatten()?;
+        Some(course.points.into_iter().map(|at| at.figures).collect())
+    }
+
+    pub(super) fn end(&mut self, date: NaiveDate, words: String, check: Option<Check>) {
+        self.run.ended = Some(Ended { date, words, check });
+    }
+}
+
+fn decision(date: NaiveDate, why: Why, chosen: Chosen) -> Decision {
+    let Chosen { asked, moves, attainable_c, past } = chosen;
+    Decision { date, why, asked, moves: moves.count, crew_hours: moves.crew_hours, attainable_c, past }
+}

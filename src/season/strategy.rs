@@ -1,0 +1,71 @@
+//! What each strategy wants of a day.
+//!
+//! Methods: `docs/methods.md`, section 8.
+
+use chrono::NaiveDate;
+
+use crate::mix::{Asked, Setting};
+use crate::site::{Site, Strategy};
+
+use super::aims::aim_on;
+use super::decide::Why;
+use super::plan::Schedule;
+use super::run::{Choosing, Setup};
+
+/// What is wanted of a day on which something is decided.
+pub(super) enum Wants {
+    /// What is set stays, as long as it can.
+    Stay,
+    /// The best mix, with an aim.
+    Best(f64),
+    /// These gates.
+    These(Asked),
+}
+
+/// The name of what chooses the gates.
+pub(super) fn name(choosing: &Choosing) -> &'static str {
+    match choosing {
+        Choosing::By(strategy) => strategy.name(),
+        Choosing::Schedule(_) => "schedule",
+        Choosing::Aims(_) | Choosing::Found(_) => Strategy::Thrift.name(),
+    }
+}
+
+/// Whether something is decided on a date because its time has come.
+pub(super) fn is_due(setup: &Setup, decides: NaiveDate, date: NaiveDate) -> bool {
+    let passed = (date - decides).num_days();
+    let is_turn = passed >= 0 && passed % i64::from(setup.decide_days.max(1)) == 0;
+    is_turn || schedule(&setup.choosing).is_some_and(|s| s.changes.iter().any(|change| change.0 == date))
+}
+
+/// What is wanted of a day on which something is decided for a reason.
+pub(super) fn wants(setup: &Setup, decides: NaiveDate, site: &Site, date: NaiveDate, why: Why) -> Wants {
+    let is_forced = matches!(why, Why::Forced(_));
+    match &setup.choosing {
+        Choosing::By(Strategy::Best | Strategy::Thrift) => Wants::Best(0.0),
+        Choosing::Aims(aims) => Wants::Best(aim_on(aims, decides, setup.decide_days, date)),
+        Choosing::By(Strategy::Hold) if is_forced => Wants::Best(0.0),
+        Choosing::By(Strategy::Hold) => Wants::Stay,
+        Choosing::Schedule(of) | Choosing::Found(of) => scheduled(of, site, date, why),
+    }
+}
+
+fn schedule(choosing: &Choosing) -> Option<&Schedule> {
+    match choosing {
+        Choosing::Schedule(schedule) | Choosing::Found(schedule) => Some(schedule),
+        Choosing::By(_) | Choosing::Aims(_) => None,
+    }
+}
+
+/// What a schedule says on a date: at its changes, and on the first day of decisions what it has come to by then. What
+/// was forced holds until its next change.
+fn scheduled(schedule: &Schedule, site: &Site, date: NaiveDate, why: Why) -> Wants {
+    let come = schedule.changes.iter().take_while(|change| change.0 <= date).last();
+    let gates = match (come, why) {
+        (Some(change), _) if change.0 == date => Some(&change.1),
+        (Some(change), Why::Begin) => Some(&change.1),
+        (_, Why::Forced(_)) => return Wants::Best(0.0),
+        _ => None,
+    };
+    gates.map_or(Wants::Stay, |gates| Wants::These(Asked::of(site, &Setting::of(gates.clone()))))
+}
