@@ -69,7 +69,7 @@ pub fn reach(run: &SeasonRun, system: System) -> Vec<String> {
     let unit = system.unit(Dimension::Temperature);
     let c = |c: f64| figure(c, unit, 1);
     let mut out =
-        vec![format!("{:<DATE$}{:<18}{:<18}, {}", "", "within reach", "asked at the dam", unit.symbol())];
+        vec![format!("{:<DATE$}{:<18}asked at the dam", format!("in {}", unit.symbol()), "within reach")];
     out.extend(run.outcome.reached.iter().map(|on| {
         let within =
             on.attainable_c.map_or_else(|| "not known".to_owned(), |[a, b]| format!("{} to {}", c(a), c(b)));
