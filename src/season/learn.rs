@@ -34,8 +34,10 @@ pub const WATER_DEMAND_MG_L_DAY: [f64; 2] = [0.01, 0.3];
 /// Rounds over the knobs; each looks nearer about what the last found (choice).
 const ROUNDS: usize = 5;
 /// How much nearer (choice).
-const NEARER: f64 = 0.4;
-/// Trials of a knob in a round (choice).
+const NEARER: f64 = 0.5;
+/// How far a round looks on along the way that the knobs have gone together, as a multiple of it (choice).
+const BEYOND: f64 = 4.0;
+/// Trials along each way (choice).
 const TRIALS: usize = 9;
 /// The golden section.
 const GOLDEN: f64 = 0.618_033_988_749_894_9;
@@ -117,7 +119,8 @@ pub fn learn(
         apart(&trial, begun, days, cast)
     };
     let mut knobs = before;
-    let total = (ROUNDS * TRIALS * (WARMTH.len() + BREATH.len())) as f64;
+    // of the temperature one way for each knob and one for all together, of the oxygen a single one; and the start of each
+    let total = (ROUNDS * TRIALS * (WARMTH.len() + 1 + BREATH.len()) + 2) as f64;
     let mut done = 0.0;
     // oxygen moves no water, so the temperature is fitted first
     let with_oxygen = casts.iter().all(|c| !c.oxygen.is_empty());
@@ -237,41 +240,70 @@ fn root_mean_square(values: impl Iterator<Item = f64>) -> Option<f64> {
     (count > 0.0).then(|| f64::sqrt(sum / count))
 }
 
-/// The knobs that miss least: one after the other by golden section on the logarithm, round after round nearer about the
-/// best so far, which is never given up for a worse. `None` where `miss` stops it.
+/// The knobs that miss least, by their logarithms: in each round one after the other, then all along the way they have
+/// gone together; round after round nearer about the best so far, which is never given up for a worse. `None` where
+/// `miss` stops it.
 fn search(some: &[Knob], from: Knobs, miss: &mut dyn FnMut(Knobs) -> Option<f64>) -> Option<Knobs> {
-    let mut best = (miss(from)?, from);
-    let mut half = 1.0;
-    for _ in 0..ROUNDS {
-        for knob in some {
-            let [least, most] = knob.range.map(f64::ln);
-            let at = (knob.of)(&mut best.1.clone()).ln().clamp(least, most);
-            let reach = half * (most - least);
-            let (mut low, mut high) = ((at - reach).max(least), (at + reach).min(most));
-            let mut try_at = |x: f64| {
-                let mut knobs = best.1;
-                *(knob.of)(&mut knobs) = x.exp();
-                let far = miss(knobs)?;
-                if far < best.0 {
-                    best = (far, knobs);
-                }
-                Some(far)
-            };
-            let mut inner = [high - GOLDEN * (high - low), low + GOLDEN * (high - low)];
-            let mut far = [try_at(inner[0])?, try_at(inner[1])?];
-            for _ in 2..TRIALS {
-                if far[0] <= far[1] {
-                    high = inner[1];
-                    inner = [high - GOLDEN * (high - low), inner[0]];
-                    far = [try_at(inner[0])?, far[0]];
-                } else {
-                    low = inner[0];
-                    inner = [inner[1], low + GOLDEN * (high - low)];
-                    far = [far[1], try_at(inner[1])?];
-                }
-            }
+    let ends: Vec<[f64; 2]> = some.iter().map(|knob| knob.range.map(f64::ln)).collect();
+    let put = |place: &[f64]| {
+        let mut knobs = from;
+        for ((knob, x), [least, most]) in some.iter().zip(place).zip(&ends) {
+            *(knob.of)(&mut knobs) = x.clamp(*least, *most).exp();
         }
-        half *= NEARER;
+        knobs
+    };
+    let mut knobs = from;
+    let mut far = |place: &[f64]| miss(put(place));
+    let mut place: Vec<f64> = Vec::new();
+    for (knob, [least, most]) in some.iter().zip(&ends) {
+        place.push((knob.of)(&mut knobs).ln().clamp(*least, *most));
     }
-    Some(best.1)
+    let mut best = (far(&place)?, place);
+    let mut reach = 1.0;
+    for _ in 0..ROUNDS {
+        let begun = best.1.clone();
+        for (i, [least, most]) in ends.iter().enumerate() {
+            let mut way = vec![0.0; some.len()];
+            way[i] = most - least;
+            along(&mut best, &way, [-reach, reach], &mut far)?;
+        }
+        let way: Vec<f64> = best.1.iter().zip(&begun).map(|(is, was)| is - was).collect();
+        if some.len() > 1 {
+            along(&mut best, &way, [-1.0, BEYOND], &mut far)?;
+        }
+        reach *= NEARER;
+    }
+    Some(put(&best.1))
+}
+
+/// Looks along a way from the best place by golden section, between two multiples of it.
+fn along(
+    best: &mut (f64, Vec<f64>),
+    way: &[f64],
+    [mut low, mut high]: [f64; 2],
+    far: &mut dyn FnMut(&[f64]) -> Option<f64>,
+) -> Option<()> {
+    let from = best.1.clone();
+    let mut at = |t: f64| {
+        let place: Vec<f64> = from.iter().zip(way).map(|(x, w)| x + t * w).collect();
+        let miss = far(&place)?;
+        if miss < best.0 {
+            *best = (miss, place);
+        }
+        Some(miss)
+    };
+    let mut inner = [high - GOLDEN * (high - low), low + GOLDEN * (high - low)];
+    let mut missed = [at(inner[0])?, at(inner[1])?];
+    for _ in 2..TRIALS {
+        if missed[0] <= missed[1] {
+            high = inner[1];
+            inner = [high - GOLDEN * (high - low), inner[0]];
+            missed = [at(inner[0])?, missed[0]];
+        } else {
+            low = inner[0];
+            inner = [inner[1], low + GOLDEN * (high - low)];
+            missed = [missed[1], at(inner[1])?];
+        }
+    }
+    Some(())
 }
