@@ -24,6 +24,8 @@ mod river;
 mod series;
 #[path = "laws/shape.rs"]
 mod shape;
+#[path = "laws/thrift/mod.rs"]
+mod thrift;
 #[path = "laws/weather.rs"]
 mod weather;
 #[path = "laws/wells/mod.rs"]
