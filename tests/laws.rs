@@ -20,12 +20,16 @@ mod mix;
 mod rank;
 #[path = "laws/river/mod.rs"]
 mod river;
+#[path = "laws/season/mod.rs"]
+mod season;
 #[path = "laws/series.rs"]
 mod series;
 #[path = "laws/shape.rs"]
 mod shape;
 #[path = "laws/thrift/mod.rs"]
 mod thrift;
+#[path = "laws/skies.rs"]
+mod skies;
 #[path = "laws/weather.rs"]
 mod weather;
 #[path = "laws/wells/mod.rs"]

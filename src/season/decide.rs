@@ -4,7 +4,7 @@
 
 use chrono::NaiveDate;
 
-use crate::mix::limits::{self, Before, Check, Moves};
+use crate::mix::limits::{self, Before, Check, Move, Moves};
 use crate::mix::{Asked, Day, Drawn, Setting, checks};
 use crate::profile::Profile;
 use crate::rank::{Criterion, Full, Order, Progress, Question, Ranked, Ranking, Stopped, rank};
@@ -46,8 +46,12 @@ pub struct Decision {
     pub asked: Asked,
     /// Gates moved.
     pub moves: usize,
+    /// Which, from what was set as it would flow on the day; empty where nothing was known to be set.
+    pub moved: Vec<Move>,
     /// Crew hours.
     pub crew_hours: f64,
+    /// Longest notice that a move needs, days.
+    pub lead_days: f64,
     /// Coldest and warmest release that an allowed mix gives, C.
     pub attainable_c: Option<[f64; 2]>,
     /// Limits of the change that it breaks, since no mix keeps them.
@@ -79,6 +83,8 @@ pub(super) struct Chosen {
     pub(super) asked: Asked,
     /// Moves from what is set before.
     pub(super) moves: Moves,
+    /// Which gates move.
+    pub(super) moved: Vec<Move>,
     /// Coldest and warmest release that an allowed mix gives, C.
     pub(super) attainable_c: Option<[f64; 2]>,
     /// Limits of the change that it breaks.
@@ -99,6 +105,7 @@ pub(super) struct Tried {
     pub(super) asked: Asked,
     pub(super) temperature_c: f64,
     moves: Moves,
+    moved: Vec<Move>,
     still: Vec<Check>,
     change: Vec<Check>,
     key: f64,
@@ -208,6 +215,7 @@ impl Choice<'_> {
             key: order.key(&Full { temperature_c, oxygen_mg_l, cold_share }, &moves),
             off_c: order.off_c(temperature_c),
             moves,
+            moved: self.now.map_or_else(Vec::new, |now| limits::moved(self.site, now, &setting)),
             still,
             change,
         })
@@ -225,7 +233,7 @@ impl Choice<'_> {
         let attainable_c =
             extremes.map(|[low, high]| [low.min(tried.temperature_c), high.max(tried.temperature_c)]);
         let past = tried.change.into_iter().filter(Check::broken).collect();
-        Chosen { asked: tried.asked, moves: tried.moves, attainable_c, past }
+        Chosen { asked: tried.asked, moves: tried.moves, moved: tried.moved, attainable_c, past }
     }
 }
 

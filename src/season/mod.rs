@@ -52,5 +52,4 @@ pub use plan::{Plan, PlanDay, RawPlan, RawPlanRow, Schedule};
 pub use run::{Choosing, Ended, Run, SeasonDay, Setup, run};
 pub use skies::{Skies, Sky};
 pub use step::{Forcing, Inflow, MOST_OPEN, Stepped, Unbalanced, day};
-pub use surface::{LIGHT_AT_SURFACE, extinction_per_m, light_left};
 pub use tally::{Score, TargetTally, tallies};

@@ -4,10 +4,10 @@
 
 use crate::site::Site;
 
-use super::layers::{Layer, Layers, elevation_m};
+use super::layers::{Layer, Layers};
 
 /// Brings every layer between half and twice the wanted thickness: the thinnest first joins the neighbour nearer in
-/// density, then the thick are cut into equal volumes.
+/// density, then the thick are cut at half their height.
 pub(super) fn reshape(layers: &mut Layers, site: &Site) {
     let (least_m, most_m) = (0.5 * layers.thickness_m, 2.0 * layers.thickness_m);
     let mut edges = layers.edges_m(&site.pool);
@@ -23,16 +23,16 @@ pub(super) fn reshape(layers: &mut Layers, site: &Site) {
         water[lower] = water[lower].joined(&upper);
         edges.remove(lower + 1);
     }
-    let base_m3 = site.pool.volume_m3(site.pool.bed_m);
-    let mut below_m3 = base_m3;
+    let mut below_m3 = site.pool.volume_m3(site.pool.bed_m);
     let mut i = 0;
     while i < water.len() {
         let whole = water[i];
-        if edges[i + 1] - edges[i] > most_m {
-            let half = whole.part(0.5 * whole.volume_m3);
-            water[i] = half;
-            water.insert(i, half);
-            edges.insert(i + 1, elevation_m(&site.pool, below_m3 + half.volume_m3));
+        let half_m = 0.5 * (edges[i] + edges[i + 1]);
+        let lower_m3 = site.pool.volume_m3(half_m) - below_m3;
+        if edges[i + 1] - edges[i] > most_m && 0.0 < lower_m3 && lower_m3 < whole.volume_m3 {
+            water[i] = whole.part(whole.volume_m3 - lower_m3);
+            water.insert(i, whole.part(lower_m3));
+            edges.insert(i + 1, half_m);
         } else {
             below_m3 += whole.volume_m3;
             i += 1;

@@ -61,6 +61,20 @@ impl Default for Knobs {
     }
 }
 
+/// Extinction of light times the depth at which a white disk is lost from sight (recalled: Poole and Atkins 1929).
+const LIGHT_BY_SECCHI: f64 = 1.7;
+
+/// Extinction of light from the depth at which a white disk is lost from sight, per m.
+///
+/// # Units
+/// Depth m, result 1/m.
+///
+/// # References
+/// Poole and Atkins 1929 (recalled): Kd = 1.7 / depth.
+pub fn light_of_secchi_per_m(secchi_m: f64) -> f64 {
+    LIGHT_BY_SECCHI / secchi_m
+}
+
 /// A case of weather and inflow, made from what is given by stated shifts.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Case {
@@ -119,8 +133,10 @@ pub struct SeasonInputs {
     pub evaporates: bool,
     /// Oxygen transfer through the surface, m/day.
     pub transfer_m_day: f64,
-    /// Mean weather over the pool by month, where the weather file does not tell.
+    /// Mean weather over the pool by month, where the weather file does not tell: its own, else that of the river.
     pub monthly: Option<Box<[Air; 12]>>,
+    /// File of the weather over the pool, where the river names none.
+    pub weather: Option<String>,
     /// Daily weather of several years.
     pub years: Option<String>,
     /// Cases; the middle one of them is the one spoken of.
@@ -149,6 +165,7 @@ impl Default for SeasonInputs {
             evaporates: true,
             transfer_m_day: 0.5,
             monthly: None,
+            weather: None,
             years: None,
             // choice: two degrees of the air either way, and half as much in the inflow
             cases: vec![case("warm", 2.0, 1.0), case("middling", 0.0, 0.0), case("cool", -2.0, -1.0)],

@@ -84,6 +84,8 @@ pub enum Role {
     Inside,
     /// Outside a target, beyond a limit.
     Outside,
+    /// A band of the water in a picture of the season, the coldest 0.
+    Band(usize),
     /// Worth a second look.
     Warn,
     /// A field being typed.
@@ -111,6 +113,16 @@ const VERMILLION: Color = Color::Indexed(166);
 const BLUE: Color = Color::Indexed(32);
 const PURPLE: Color = Color::Indexed(175);
 const YELLOW: Color = Color::Indexed(227);
+
+/// Colours of the bands, from cold to warm; what they tell is also told by the characters.
+const BANDS: [(Color, Color); 6] = [
+    (BLUE, Color::Blue),
+    (SKY, Color::Cyan),
+    (GREEN, Color::Green),
+    (YELLOW, Color::Yellow),
+    (ORANGE, Color::Magenta),
+    (VERMILLION, Color::Red),
+];
 
 impl Look {
     /// The same with [`Theme::Auto`] settled by what the terminal says of itself. Where that is that it has no colours,
@@ -140,6 +152,7 @@ impl Look {
 
     fn colour(self, role: Role) -> Option<Color> {
         let (palette, ansi) = match role {
+            Role::Band(band) => BANDS[band.min(BANDS.len() - 1)],
             Role::Temperature | Role::Warn | Role::Caution => (ORANGE, Color::Yellow),
             Role::Oxygen | Role::Cold | Role::Key => (SKY, Color::Cyan),
             Role::Zone => (BLUE, Color::Blue),

@@ -4,6 +4,7 @@
 
 mod aeration;
 mod density;
+mod light;
 mod oxygen;
 mod reaeration;
 mod solids;
@@ -17,6 +18,7 @@ pub use density::{
     SEDIMENT_DENSITY_KG_M3, density_kg_m3, pure_water_kg_m3, salt_slope, suspended_gain_kg_m3,
     temperature_of_greatest_density_c,
 };
+pub use light::{LIGHT_AT_SURFACE, extinction_per_m, light_left};
 pub use oxygen::{
     oxygen_from_percent_mg_l, oxygen_percent, pressure_atm, pressure_factor, saturation_1atm_mg_l,
     saturation_mg_l, vapour_pressure_atm,

@@ -170,7 +170,7 @@ fn targets(site: &Site, of: &SeasonRun) -> Vec<TargetJson> {
             case: of.run.case.clone(),
             days_outside: told.days_outside(),
             degree_days_outside: told.temperature.as_ref().filter(|_| degrees).map(|t| t.sum_outside),
-            longest_run: main.longest_run,
+            longest_run: told.longest_run(),
             days: main.judged,
             days_unknown: main.unknown,
             days_above: range.over,

@@ -4,10 +4,12 @@ use std::sync::Arc;
 
 use chrono::NaiveDate;
 
-use crate::problem::Problem;
+use crate::files::text::Source;
+use crate::problem::{Problem, Weight};
 use crate::season::{Choosing, Plan, Skies};
 use crate::site::{self, Strategy};
 use crate::tasks::{Context, Failure};
+use crate::units::System;
 
 /// What a season is asked, as typed.
 #[derive(Debug, Clone, Default, PartialEq)]
@@ -30,12 +32,12 @@ pub struct SeasonAsked {
 const MOST_DAYS: u32 = 366;
 
 /// A case of weather.
-#[derive(Debug, Clone, PartialEq)]
+#[derive(Debug, Clone)]
 pub(super) enum Case {
     /// Made by shifts.
     Shifted(site::Case),
-    /// A year of a record.
-    Year(i32),
+    /// A year of a record, over the days of the plan spoken of.
+    Year(Arc<Skies>),
 }
 
 /// What is asked, understood.
@@ -66,27 +68,32 @@ pub(super) struct Understood {
 pub(super) fn understood(context: &Context, asked: &SeasonAsked) -> Result<Understood, Failure> {
     let site = context.site();
     let decide_days = every(asked.every.as_deref())?.unwrap_or(site.season.decide_days);
-    let choosing = choosing(context, asked)?;
+    let mut sources = Vec::new();
+    let choosing = choosing(context, asked, &mut sources)?;
+    let Plans { plan, others, refused, sources: read } = plans(context, asked.plan.as_deref())?;
+    sources.extend(read);
+    sources.extend(context.folder.years().and_then(|years| years.source.clone()));
     let decides = context.on.date_naive();
     let cast = context.profile.taken.map(|taken| taken.with_timezone(&site.offset).date_naive());
     let begins = cast.map_or(decides, |cast| cast.min(decides));
-    let cases: Vec<Case> = cases(context, begins);
-    let case = case(asked.case.as_deref(), &cases)?;
-    let plans = plans(context, asked.plan.as_deref())?;
-    if plans.plan.days.last().is_none_or(|day| day.date <= decides.max(begins)) {
-        return Err(Failure::Refused(vec![over(&plans.plan, decides)], context.system));
+    if plan.span().is_none_or(|(_, last)| last <= decides) {
+        return Err(Failure::Refused(vec![over(&plan, decides)], context.system));
     }
+    let cases = cases(context, begins, &plan);
+    let case = case(asked.case.as_deref(), &cases)?;
+    let all: Vec<&Source> =
+        std::iter::once(&context.source).chain(&context.folder.around().sources).chain(&sources).collect();
     Ok(Understood {
-        plan: plans.plan,
-        other_plans: plans.others,
-        refused: plans.refused,
+        fingerprint: context.folder.fingerprint(&all),
+        plan,
+        other_plans: others,
+        refused,
         case,
         cases,
         choosing,
         decide_days,
         begins,
         decides,
-        fingerprint: plans.fingerprint,
     })
 }
 
@@ -98,12 +105,17 @@ fn every(typed: Option<&str>) -> Result<Option<u32>, Failure> {
     }
 }
 
-fn choosing(context: &Context, asked: &SeasonAsked) -> Result<Choosing, Failure> {
+fn choosing(context: &Context, asked: &SeasonAsked, sources: &mut Vec<Source>) -> Result<Choosing, Failure> {
     match (asked.strategy.as_deref(), asked.schedule.as_deref()) {
         (Some(_), Some(_)) => {
             Err(Failure::Usage("--strategy and --schedule both say how gates are chosen: give one".into()))
         }
-        (None, Some(file)) => schedule(context, file),
+        (None, Some(file)) => {
+            let read = context.folder.schedule(file).map_err(|problem| usage("--schedule", &problem))?;
+            sources.push(read.source);
+            let refused = || Failure::Refused(read.problems, context.system);
+            read.schedule.map(Choosing::Schedule).ok_or_else(refused)
+        }
         (Some(name), None) => Strategy::parse(name).map(Choosing::By).ok_or_else(|| {
             let names: Vec<&str> = Strategy::NAMES.iter().map(|n| n.0).collect();
             Failure::Usage(format!(
@@ -123,29 +135,25 @@ fn case(typed: Option<&str>, cases: &[Case]) -> Result<Case, Failure> {
         None => cases.get(own / 2),
     };
     found.cloned().ok_or_else(|| {
-        let names: Vec<String> = cases.iter().map(Case::name).collect();
+        let names: Vec<&str> = cases.iter().map(Case::name).collect();
         let name = typed.unwrap_or_default();
         Failure::Usage(format!("--case {name}: there is none of that name; there are {}", names.join(", ")))
     })
 }
 
 fn over(plan: &Plan, decides: NaiveDate) -> Problem {
-    let last = plan.days.last().map_or_else(String::new, |day| format!(" on {}", day.date));
+    let last = plan.span().map_or_else(String::new, |(_, last)| format!(" on {last}"));
     let words = format!("the plan `{}` ends{last}, and the day decided for is {decides}", plan.name);
-    Problem::refused(
-        "plan-over",
-        words,
-        "add rows for the days ahead, or decide for an earlier day with --on",
-    )
-    .in_file(&plan.file)
+    let cure = "add rows for the days ahead, or decide for an earlier day with --on";
+    Problem::refused("plan-over", words, cure).in_file(&plan.file)
 }
 
 impl Case {
     /// What it is called.
-    pub(super) fn name(&self) -> String {
+    pub(super) fn name(&self) -> &str {
         match self {
-            Self::Shifted(case) => case.name.clone(),
-            Self::Year(year) => year.to_string(),
+            Self::Shifted(case) => &case.name,
+            Self::Year(skies) => &skies.case.name,
         }
     }
 
@@ -156,42 +164,74 @@ impl Case {
         begins: NaiveDate,
         plan: &Plan,
     ) -> Result<Arc<Skies>, Problem> {
-        let last = plan.days.last().map_or(begins, |day| day.date);
+        let last = plan.span().map_or(begins, |(_, last)| last);
         let found = match self {
-            Self::Shifted(case) => Skies::of_case(context.site(), &context.conditions, case, begins, last),
-            Self::Year(year) => Err(format!("{year}")),
+            Self::Shifted(case) => {
+                Skies::of_case(context.site(), &context.conditions, case, begins, last).map(Arc::new)
+            }
+            Self::Year(skies) if skies.days.contains_key(&last) => Ok(skies.clone()),
+            Self::Year(skies) => years(context, begins, plan)
+                .into_iter()
+                .find(|other| other.year == skies.year)
+                .map(Arc::new)
+                .ok_or_else(|| format!("its record does not hold every day to {last}")),
         };
-        found.map(Arc::new).map_err(|why| {
-            let words = format!("case {}: {why}", self.name());
-            Problem::refused(
-                "no-air",
-                words,
-                "give `season.monthly` in the site file, or weather for those days",
-            )
+        found.map_err(|why| {
+            let words = format!("case {}, plan {}: {why}", self.name(), plan.name);
+            let cure = "give `season.monthly` in the site file, or weather for those days";
+            Problem::refused("no-air", words, cure)
         })
     }
 }
 
-/// The plans of the folder.
+/// The plans of the folder, the one spoken of apart.
 struct Plans {
     plan: Arc<Plan>,
     others: Vec<Arc<Plan>>,
     refused: Vec<Problem>,
-    fingerprint: String,
+    sources: Vec<Source>,
 }
 
+/// The plan of a name, the first by file name without; every other sound one of the folder beside it.
 fn plans(context: &Context, typed: Option<&str>) -> Result<Plans, Failure> {
-    let _ = (context, typed);
-    Err(Failure::Stopped)
+    let folder = &context.folder;
+    let listed = match typed {
+        Some(name) => folder.plan(name).map_err(|problem| usage("--plan", &problem))?,
+        None => folder.plans().first().cloned().ok_or_else(|| {
+            let cure = "put one into the folder `plans` of the site: date, pool or release, inflow and its temperature";
+            let problem = Problem::refused("no-plan", "the site has no plan of a season", cure);
+            Failure::Refused(vec![problem], context.system)
+        })?,
+    };
+    let Some(plan) = listed.plan.clone() else {
+        return Err(Failure::Refused(listed.problems, context.system));
+    };
+    let beside = || folder.plans().iter().filter(|other| other.file != listed.file);
+    let refused = beside()
+        .filter(|other| other.plan.is_none())
+        .filter_map(|other| other.problems.iter().find(|p| p.weight == Weight::Refused).cloned());
+    Ok(Plans {
+        plan,
+        others: beside().filter_map(|other| other.plan.clone()).collect(),
+        refused: refused.collect(),
+        sources: listed.source.into_iter().chain(beside().filter_map(|other| other.source.clone())).collect(),
+    })
 }
 
-fn schedule(context: &Context, file: &str) -> Result<Choosing, Failure> {
-    let _ = (context, file);
-    Err(Failure::Stopped)
+/// What cannot be found by a name that was typed, with those there are.
+fn usage(option: &str, problem: &Problem) -> Failure {
+    Failure::Usage(format!("{option}: {}", problem.advice(System::default())))
 }
 
-/// The site's own cases, then one for each year of its record.
-fn cases(context: &Context, begins: NaiveDate) -> Vec<Case> {
-    let _ = begins;
-    context.site().season.cases.iter().cloned().map(Case::Shifted).collect()
+/// The site's own cases, then one for each year of its record that holds every day.
+fn cases(context: &Context, begins: NaiveDate, plan: &Plan) -> Vec<Case> {
+    let own = context.site().season.cases.iter().cloned().map(Case::Shifted);
+    own.chain(years(context, begins, plan).into_iter().map(|skies| Case::Year(Arc::new(skies)))).collect()
+}
+
+fn years(context: &Context, begins: NaiveDate, plan: &Plan) -> Vec<Skies> {
+    let told = context.folder.years().and_then(|years| years.weather.as_ref()).zip(plan.span());
+    told.map_or_else(Vec::new, |(weather, (_, last))| {
+        Skies::of_years(context.site(), &context.conditions, weather, begins, last)
+    })
 }

@@ -1,16 +1,15 @@
 //! What a season assumes, and what it does not look at.
 
-use crate::problem::Problem;
+use crate::problem::{Problem, Weight};
 use crate::tasks::Context;
+use crate::units::say;
 
 use super::asked::{Case, Understood};
 
 /// Notes on the plans, the cases and the model.
 pub(super) fn notes(context: &Context, of: &Understood) -> Vec<Problem> {
     let mut out: Vec<Problem> = of.plan.notes.clone();
-    out.extend(
-        of.refused.iter().map(|problem| Problem { weight: crate::problem::Weight::Flag, ..problem.clone() }),
-    );
+    out.extend(of.refused.iter().map(|problem| Problem { weight: Weight::Flag, ..problem.clone() }));
     out.extend(context.rules_off());
     out.push(Problem::note("cases", cases(&of.cases)));
     if !context.site().blocks.is_empty() {
@@ -26,9 +25,8 @@ pub(super) fn notes(context: &Context, of: &Understood) -> Vec<Problem> {
 /// The cases by their shifts.
 fn cases(cases: &[Case]) -> String {
     let shifts = |case: &Case| match case {
-        Case::Year(year) => year.to_string(),
+        Case::Year(skies) => skies.case.name.clone(),
         Case::Shifted(case) => {
-            use crate::units::say;
             let mut parts = Vec::new();
             if case.air_c.abs() > 0.0 {
                 parts.push(format!("air {}", say::dc(case.air_c, 1).signed()));
@@ -46,5 +44,5 @@ fn cases(cases: &[Case]) -> String {
             format!("{} ({shifts})", case.name)
         }
     };
-    format!("cases: {}", cases.iter().map(shifts).collect::<Vec<_>>().join("; "))
+    cases.iter().map(shifts).collect::<Vec<_>>().join("; ")
 }

@@ -57,7 +57,7 @@ impl Table<'_> {
             Ok(skies) => jobs.push((plan.clone(), skies, choosing)),
             Err(problem) => notes.push(Problem::flag("season-left-out", problem.words, problem.cure)),
         };
-        for case in of.cases.iter().filter(|case| **case != of.case) {
+        for case in of.cases.iter().filter(|case| case.name() != of.case.name()) {
             put(&of.plan, case, again.clone());
         }
         for plan in &of.other_plans {

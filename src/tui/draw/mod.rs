@@ -5,6 +5,7 @@ mod boxed;
 pub mod column;
 pub mod gauge;
 mod pen;
+pub mod season;
 pub mod trade;
 
 pub use boxed::boxed;

@@ -47,29 +47,30 @@ pub struct Ahead {
 }
 
 impl Ahead {
-    /// Every season of the answer, the one spoken of first.
-    pub fn runs(&self) -> impl Iterator<Item = &SeasonRun> {
-        std::iter::once(&self.answer.main).chain(&self.answer.others)
-    }
-
     /// The season that something asked speaks of, where it is among these.
     fn of(&self, asked: &SeasonAsked) -> Option<&SeasonRun> {
-        let main = &self.answer.main;
-        let own = &self.question.asked;
-        let strategy = asked.strategy.as_ref().filter(|s| **s != main.run.strategy);
-        if strategy.is_some() && own.strategy.as_ref() != strategy {
-            return None;
-        }
-        if asked.strategy.is_none() && own.strategy.is_some() {
-            return None;
-        }
+        let (main, own) = (&self.answer.main.run, &self.question.asked);
         // a name left open means what it meant when these were asked
         let name = |asked: &Option<String>, own: &Option<String>, main: &str| {
             if asked == own { Some(main.to_owned()) } else { asked.clone() }
         };
-        let plan = name(&asked.plan, &own.plan, &main.plan.name)?;
-        let case = name(&asked.case, &own.case, &main.skies.case.name)?;
-        self.runs().find(|r| r.plan.name == plan && r.skies.case.name == case)
+        let names = [
+            name(&asked.plan, &own.plan, &main.plan)?,
+            name(&asked.case, &own.case, &main.case)?,
+            name(&asked.strategy, &own.strategy, &main.strategy)?,
+        ];
+        self.answer.runs().find(|r| [&r.run.plan, &r.run.case, &r.run.strategy] == names.each_ref())
+    }
+
+    /// The season that comes nearest to what is asked: of its plan, then of its strategy, then of its case.
+    fn nearest(&self, asked: &SeasonAsked) -> &SeasonRun {
+        let differs = |name: &Option<String>, own: &str| name.as_ref().is_some_and(|n| n != own);
+        let far = |r: &&SeasonRun| {
+            let run = &r.run;
+            let of = [(&asked.plan, &run.plan), (&asked.strategy, &run.strategy), (&asked.case, &run.case)];
+            of.map(|(name, own)| differs(name, own))
+        };
+        self.answer.runs().min_by_key(far).unwrap_or(&self.answer.main)
     }
 }
 
@@ -129,7 +130,7 @@ impl Session {
         let newest = || self.ahead.iter().rev();
         let chosen = |ahead: &'_ Ahead| ahead.question.is_beside(&question);
         let now = newest().filter(|a| chosen(a)).find_map(|a| Some((a, a.of(&question.asked)?)));
-        let before = || newest().next().map(|a| (a, a.of(&question.asked).unwrap_or(&a.answer.main)));
+        let before = || newest().next().map(|a| (a, a.nearest(&question.asked)));
         let old = now.is_none();
         now.or_else(before).map(|(ahead, run)| SeasonShown { ahead, run, old })
     }

@@ -57,6 +57,7 @@ fn pointed(model: &mut Model, mouse: MouseEvent, pressed: bool) -> Vec<Effect> {
                 super::rank::choose_mix(session, at);
             }
         }
+        Hit::Day(day) => super::season::pressed(model, day),
         Hit::Rule(at) if pressed => return super::river::pressed(model, at),
         Hit::Screen(_) | Hit::Site(_) | Hit::Cell(_) | Hit::Mix(_) | Hit::Rule(_) => {}
     }

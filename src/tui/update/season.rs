@@ -158,7 +158,7 @@ fn choose(
 /// The cases of an answer, in its order; those of the site first in theirs.
 fn cases(shown: &SeasonShown) -> Vec<String> {
     let of_site = shown.ahead.context.site().season.cases.iter().map(|c| c.name.clone());
-    let there: Vec<String> = shown.ahead.runs().map(|r| r.skies.case.name.clone()).collect();
+    let there: Vec<String> = shown.ahead.answer.runs().map(|r| r.run.case.clone()).collect();
     let mut names: Vec<String> = of_site.filter(|name| there.contains(name)).collect();
     for name in there {
         if !names.contains(&name) {
@@ -171,7 +171,7 @@ fn cases(shown: &SeasonShown) -> Vec<String> {
 /// The plans of an answer, by the names of their files.
 fn plans(shown: &SeasonShown) -> Vec<String> {
     let mut plans: Vec<(String, String)> =
-        shown.ahead.runs().map(|r| (r.plan.file.clone(), r.plan.name.clone())).collect();
+        shown.ahead.answer.runs().map(|r| (r.plan.file.clone(), r.run.plan.clone())).collect();
     plans.sort();
     plans.dedup();
     plans.into_iter().map(|(_, name)| name).collect()
@@ -182,11 +182,11 @@ fn strategies(_: &SeasonShown) -> Vec<String> {
 }
 
 fn case_of(shown: &SeasonShown) -> String {
-    shown.run.skies.case.name.clone()
+    shown.run.run.case.clone()
 }
 
 fn plan_of(shown: &SeasonShown) -> String {
-    shown.run.plan.name.clone()
+    shown.run.run.plan.clone()
 }
 
 fn strategy_of(shown: &SeasonShown) -> String {
@@ -223,12 +223,12 @@ fn step(model: &mut Model, by: i64) {
     session.season.day = Some(to.unwrap_or(if by < 0 { first } else { last }).clamp(first, last));
 }
 
-/// Goes to a date found among those on which gates move.
+/// Goes to a date found among those of the calendar of moves.
 fn read(model: &mut Model, to: impl Fn(NaiveDate, &[NaiveDate]) -> Option<NaiveDate>) {
     let Some(session) = model.session_mut() else { return };
     let Some((first, _)) = ends(session) else { return };
     let Some(shown) = session.season_shown() else { return };
-    let moved = shown.run.run.decisions.iter().filter(|d| d.moves > 0).map(|d| d.date);
+    let moved = shown.run.outcome.calendar.iter().map(|on| on.date);
     let found = to(session.season.day.unwrap_or(first), &moved.collect::<Vec<_>>());
     match found {
         Some(day) => session.season.day = Some(day),

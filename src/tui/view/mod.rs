@@ -12,6 +12,7 @@ mod season;
 mod water;
 mod write;
 
+use chrono::NaiveDate;
 use ratatui::buffer::Buffer;
 use ratatui::layout::{Position, Rect};
 
@@ -45,6 +46,8 @@ pub enum Hit {
     Mix(usize),
     /// A rule of the river screen.
     Rule(usize),
+    /// A date of the season.
+    Day(NaiveDate),
 }
 
 /// Draws the model; where the cursor stands, while typing.
@@ -95,7 +98,7 @@ pub fn hit(model: &Model, column: u16, row: u16) -> Option<Hit> {
             Screen::Mix => mix::hit(model, session, parts.body, at),
             Screen::Rank => rank::hit(model, session, parts.body, at),
             Screen::River => river::hit(model, session, parts.body, at).map(Hit::Rule),
-            Screen::Season => None,
+            Screen::Season => season::hit(model, session, parts.body, at).map(Hit::Day),
         },
         Stage::Opening { .. } | Stage::Broken { .. } => None,
     }
@@ -157,6 +160,9 @@ pub(super) fn answer_text(model: &Model) -> Option<String> {
         Screen::Mix => Some(text::mix(&context, session.tried()?)),
         Screen::Rank => session.ranked.as_ref().map(|r| text::rank(&in_units(&r.context), &r.answer)),
         Screen::River => session.downstream.as_ref().map(|d| text::river(&in_units(&d.context), &d.answer)),
-        Screen::Season => None,
+        Screen::Season => {
+            let ahead = session.season_shown()?.ahead;
+            Some(text::season(&in_units(&ahead.context), &ahead.answer))
+        }
     }
 }

@@ -5,7 +5,7 @@ use ratatui::layout::Rect;
 
 use crate::tui::look::{Look, Role};
 
-use super::write::{cut, put, put_right};
+use super::write::{cut, put, put_right, wrapped};
 
 /// Lines with their meaning.
 pub(super) type Lines = Vec<(String, Role)>;
@@ -42,4 +42,14 @@ fn write_from(lines: &Lines, area: Rect, from: usize, look: Look, buf: &mut Buff
     for (row, (line, role)) in (0..area.height).zip(lines.iter().skip(from)) {
         put(buf, area, 0, row, &cut(line, usize::from(area.width)), look.style(*role));
     }
+}
+
+/// Adds words, wrapped, later lines indented; the first as far as its words are.
+pub(super) fn say(lines: &mut Lines, text: &str, width: usize, indent: usize, role: Role) {
+    let lead = text.len() - text.trim_start().len();
+    let mut told = wrapped(text, width.saturating_sub(lead), indent.saturating_sub(lead));
+    for line in &mut told {
+        line.insert_str(0, &text[..lead]);
+    }
+    lines.extend(told.into_iter().map(|line| (line, role)));
 }

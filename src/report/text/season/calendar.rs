@@ -34,8 +34,8 @@ fn gate(site: &Site, life: &GateLife, system: System) -> String {
 }
 
 /// What is moved when, by whom, and by when the crew must be told.
-pub fn moves(context: &Context, answer: &SeasonAnswer, system: System) -> Vec<String> {
-    let outcome = &answer.main.outcome;
+pub fn moves(context: &Context, answer: &SeasonAnswer, run: &SeasonRun, system: System) -> Vec<String> {
+    let outcome = &run.outcome;
     let mut out = vec![format!(
         "{} gates moved on {}, {:.1} crew hours",
         outcome.moves,
@@ -69,7 +69,7 @@ pub fn reach(run: &SeasonRun, system: System) -> Vec<String> {
     let unit = system.unit(Dimension::Temperature);
     let c = |c: f64| figure(c, unit, 1);
     let mut out =
-        vec![format!("{:<DATE$}{:<18}{:<18}, {}", "", "within reach", "asked at the dam", unit.symbol())];
+        vec![format!("{:<DATE$}{:<18}asked at the dam", format!("in {}", unit.symbol()), "within reach")];
     out.extend(run.outcome.reached.iter().map(|on| {
         let within =
             on.attainable_c.map_or_else(|| "not known".to_owned(), |[a, b]| format!("{} to {}", c(a), c(b)));

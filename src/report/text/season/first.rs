@@ -61,7 +61,7 @@ pub fn out_of_reach(answer: &SeasonAnswer) -> Option<String> {
             "in {} of {known} cases no mix reaches it from {last} on, in the first of them from {first} on",
             dates.len()
         ),
-        _ => format!("in none of {known} cases it runs out"),
+        _ => format!("it runs out in none of {known} cases"),
     })
 }
 

@@ -22,7 +22,7 @@ pub use calendar::{gates, moves, reach};
 pub use cold::{cold, left};
 pub use first::{exhausted, out_of_reach, reserve, targets};
 pub use rest::rest;
-pub use side::{HEADS, Row, side};
+pub use side::{HEADS, Row, columns, meaning, side};
 
 /// Everything but head and caution.
 pub(super) fn body(context: &Context, answer: &SeasonAnswer) -> String {
@@ -36,9 +36,9 @@ pub(super) fn body(context: &Context, answer: &SeasonAnswer) -> String {
     out.push_str(&side::table(context, answer, system));
     out.push_str(&section("Cold water", cold(context, &answer.main, system)));
     out.push_str(&section("Gates", gates(context, &answer.main, system)));
-    out.push_str(&section("Moves", moves(context, answer, system)));
+    out.push_str(&section("Moves", moves(context, answer, &answer.main, system)));
     out.push_str(&section("Within reach on the days of decision", reach(&answer.main, system)));
-    out.push_str(&section("Beside", rest(context, answer, system)));
+    out.push_str(&section("Beside", rest(context, &answer.main, system)));
     // what is said of a file beside the casts may be a note of the season already
     let mut cast = flags_of(&context.profile.flags);
     cast.retain(|flag| flag.weight != Weight::Note && !answer.notes.contains(flag));

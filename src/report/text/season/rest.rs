@@ -2,7 +2,7 @@
 
 use crate::problem::harmless;
 use crate::tasks::Context;
-use crate::tasks::season::SeasonAnswer;
+use crate::tasks::season::SeasonRun;
 use crate::units::{System, in_system, say};
 
 use super::exhausted_words;
@@ -11,8 +11,8 @@ use super::exhausted_words;
 const CHANGE_HOURS: &str = "in one hour, assumed";
 
 /// A line each.
-pub fn rest(context: &Context, answer: &SeasonAnswer, system: System) -> Vec<String> {
-    let (site, outcome) = (context.site(), &answer.main.outcome);
+pub fn rest(context: &Context, run: &SeasonRun, system: System) -> Vec<String> {
+    let (site, outcome) = (context.site(), &run.outcome);
     let mut out: Vec<String> = outcome
         .warnings
         .iter()
@@ -40,8 +40,8 @@ pub fn rest(context: &Context, answer: &SeasonAnswer, system: System) -> Vec<Str
         Some(date) => format!("the pool turns over on {date}"),
         None => "the pool does not turn over in the season".to_owned(),
     });
-    out.push(fall(context, answer, system));
-    out.extend(stage_falls(context, answer, system));
+    out.push(fall(context, run, system));
+    out.extend(stage_falls(context, run, system));
     let (water, heat) = outcome.errors;
     out.push(format!(
         "balances of every day close: water to {water:.0e}, heat to {heat:.0e} of their largest term"
@@ -50,13 +50,13 @@ pub fn rest(context: &Context, answer: &SeasonAnswer, system: System) -> Vec<Str
 }
 
 /// How fast the pool falls, against its limit.
-fn fall(context: &Context, answer: &SeasonAnswer, system: System) -> String {
+fn fall(context: &Context, run: &SeasonRun, system: System) -> String {
     let limit = context
         .site()
         .limits
         .drawdown_m_per_day
         .map_or_else(|| "no limit of it is given".to_owned(), |most| format!("{} allowed", say::m(most, 2)));
-    let words = match answer.main.outcome.fastest_fall {
+    let words = match run.outcome.fastest_fall {
         Some((m, date)) => format!("the pool falls at most {} in a day, on {date}; {limit}", say::m(m, 2)),
         None => format!("the pool never falls; {limit}"),
     };
@@ -64,7 +64,7 @@ fn fall(context: &Context, answer: &SeasonAnswer, system: System) -> String {
 }
 
 /// How fast the stage can fall at points with a rating; no limit of it is kept in a site file.
-fn stage_falls(context: &Context, answer: &SeasonAnswer, system: System) -> Vec<String> {
+fn stage_falls(context: &Context, run: &SeasonRun, system: System) -> Vec<String> {
     let points = context.site().river.as_ref().map_or(&[][..], |r| &r.points);
     let hours = context.site().limits.change_hours;
     let made = hours.map_or_else(|| CHANGE_HOURS.to_owned(), |h| format!("in {h:.1} hours"));
@@ -78,5 +78,5 @@ fn stage_falls(context: &Context, answer: &SeasonAnswer, system: System) -> Vec<
         );
         Some(in_system(&words, system))
     };
-    answer.main.outcome.stage_falls.iter().filter_map(of).collect()
+    run.outcome.stage_falls.iter().filter_map(of).collect()
 }

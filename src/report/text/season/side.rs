@@ -64,30 +64,41 @@ fn date(of: &Exhausted) -> String {
 pub(super) fn table(context: &Context, answer: &SeasonAnswer, system: System) -> String {
     let _ = context;
     let rows = side(answer, system);
+    let mut out = String::new();
+    for line in columns(&rows) {
+        out.push_str(&line);
+        out.push('\n');
+    }
+    out.push_str(&wrapped(&format!("  {}", meaning(&rows, system)), 2));
+    out.push('\n');
+    out
+}
+
+/// Rows in plain columns under their heads.
+pub fn columns(rows: &[Row]) -> Vec<String> {
     let head: String = HEADS.iter().map(|head| format!("{head:>CELL$}")).collect();
-    let mut out = format!("  {:<NAME$}{head}\n", "plan, case, strategy");
-    for row in &rows {
+    let mut out = vec![format!("  {:<NAME$}{head}", "plan, case, strategy")];
+    out.extend(rows.iter().map(|row| {
         let mark = if row.main { ">" } else { " " };
         let seen = if row.foresight { " (seen)" } else { "" };
         let name = fitted(&format!("{}{seen}", row.name.join(", ")), NAME - 1);
         let cells: String = row.cells.iter().map(|cell| format!("{cell:>CELL$}")).collect();
-        out.push_str(format!("{mark} {name:<NAME$}{cells}").trim_end());
-        out.push('\n');
-    }
+        format!("{mark} {name:<NAME$}{cells}").trim_end().to_owned()
+    }));
+    out
+}
+
+/// What the heads and the cells mean.
+pub fn meaning(rows: &[Row], system: System) -> String {
     let unit = system.unit(Dimension::TemperatureDifference);
     let seen = if rows.iter().any(|row| row.foresight) {
         "; (seen): solved with that very case in view, no evidence, so unseen cases stand first"
     } else {
         ""
     };
-    out.push_str(&wrapped(
-        &format!(
-            "  outside: days outside the hard targets, summed over them; worst: farthest outside, {}; not: not by the end \
-             of the season{seen}",
-            unit.symbol()
-        ),
-        2,
-    ));
-    out.push('\n');
-    out
+    format!(
+        "outside: days outside the hard targets, summed over them; worst: farthest outside, {}; not: not by the end of the \
+         season{seen}",
+        unit.symbol()
+    )
 }

@@ -23,7 +23,7 @@ use crate::tui::look::Role;
 use crate::tui::model::{Downstream, Model, RiverPage, Session};
 
 use super::failure_words;
-use super::scroll::{self, Lines};
+use super::scroll::{self, Lines, say};
 use super::write::wrapped;
 
 /// Least rows of the page below, and of a picture (choice).
@@ -201,14 +201,4 @@ fn page(screen: &Screen, area: Rect) -> Lines {
         RiverPage::Days => days::lines(screen, width),
         RiverPage::Record => record::lines(screen, width),
     }
-}
-
-/// Adds words, wrapped, later lines indented; the first as far as its words are.
-fn say(lines: &mut Lines, text: &str, width: usize, indent: usize, role: Role) {
-    let lead = text.len() - text.trim_start().len();
-    let mut told = wrapped(text, width.saturating_sub(lead), indent.saturating_sub(lead));
-    for line in &mut told {
-        line.insert_str(0, &text[..lead]);
-    }
-    lines.extend(told.into_iter().map(|line| (line, role)));
 }

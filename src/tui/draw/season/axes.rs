@@ -1,0 +1,251 @@
+//! Where the parts of the picture lie, the axis of time, the bands of the water.
+//!
+//! Figures of the layout are choices.
+
+use chrono::{Datelike, Days};
+use ratatui::layout::Rect;
+use unicode_width::UnicodeWidthStr;
+
+use crate::plot::{Scale, ticks};
+use crate::tui::draw::pen::Pen;
+use crate::tui::{Look, Role, Symbols};
+use crate::units::{Dimension, System};
+
+use super::SeasonPicture;
+
+/// Least and most columns left of the plot, the axis counted in.
+const SIDE: (usize, usize) = (12, 18);
+/// Least columns and rows there can be a picture in.
+const LEAST: (usize, usize) = (36, 10);
+/// Rows from which every part has its title, and gates rows of their own.
+const TALL: usize = 26;
+/// Most rows of gates.
+const GATES: usize = 8;
+/// Most bands of the water: as many as there are characters for.
+pub(super) const BANDS: u32 = 6;
+/// Days of a season so short that weeks are marked instead of months.
+const SHORT: usize = 45;
+/// A threshold this near to an edge of a band, in bands, takes its place.
+const TOUCHES: f64 = 0.2;
+/// Least rows of curves.
+const CURVE: usize = 3;
+
+/// Rows of a part: the first, and how many.
+pub(super) type Rows = (usize, usize);
+
+/// Where the parts lie.
+pub(super) struct Frame {
+    /// Row of the bands.
+    pub(super) legend: usize,
+    /// Columns left of the plot.
+    pub(super) side: usize,
+    /// Columns of the plot.
+    pub(super) cols: usize,
+    /// Whether the parts have titles in the row over them.
+    pub(super) titles: bool,
+    pub(super) water: Rows,
+    pub(super) release: Rows,
+    pub(super) cold: Option<Rows>,
+    pub(super) moves: usize,
+    pub(super) outside: usize,
+    pub(super) gates: Rows,
+    pub(super) axis: usize,
+    days: usize,
+}
+
+impl Frame {
+    /// `None` where there is nothing to draw or no room for it.
+    pub(super) fn of(picture: &SeasonPicture, area: Rect) -> Option<Self> {
+        let (width, height) = (usize::from(area.width), usize::from(area.height));
+        if width < LEAST.0 || height < LEAST.1 || picture.days == 0 {
+            return None;
+        }
+        let names = picture.gates.iter().map(|g| g.name.width() + 2).max().unwrap_or(0);
+        let side = names.clamp(SIDE.0, SIDE.1.min(width / 4).max(SIDE.0));
+        let titles = height >= TALL;
+        let gates = if titles { picture.gates.len().min(GATES) } else { 0 };
+        // legend, two strips and the axis stand always
+        let title = usize::from(titles);
+        let room = height - 4 - gates - title;
+        let curves = 1 + usize::from(picture.cold.is_some());
+        let room = room - if titles { curves } else { 0 };
+        let mut release = (room * 3 / 10).max(CURVE);
+        let mut cold = if picture.cold.is_some() { (room / 5).max(CURVE - 1) } else { 0 };
+        if room < release + cold + CURVE {
+            (release, cold) = (room / 2, 0);
+        }
+        let water = (1 + title, room - release - cold);
+        let release = (water.0 + water.1 + title, release);
+        let below = release.0 + release.1;
+        let cold = (cold > 0).then_some((below + title, cold));
+        let moves = cold.map_or(below, |(from, rows)| from + rows);
+        Some(Self {
+            legend: title,
+            side,
+            cols: width - side,
+            titles,
+            water,
+            release,
+            cold,
+            moves,
+            outside: moves + 1,
+            gates: (moves + 2, gates),
+            axis: height - 1,
+            days: picture.days,
+        })
+    }
+
+    /// The day that a column of the plot shows.
+    pub(super) fn day_of(&self, col: usize) -> usize {
+        day_of(col, self.cols, self.days)
+    }
+
+    /// Column of the plot of a day.
+    pub(super) fn col_of(&self, day: usize) -> usize {
+        col_of(day, self.cols, self.days)
+    }
+
+    /// Months, or weeks of a short season, and the day read.
+    pub(super) fn time(&self, picture: &SeasonPicture, pen: &mut Pen, look: Look) {
+        let ascii = look.symbols == Symbols::Ascii;
+        let mut free = 0;
+        for day in 0..self.days {
+            let Some(date) = picture.first.checked_add_days(Days::new(day as u64)) else { return };
+            let text = match (day, self.days < SHORT) {
+                (0, _) => date.format("%b %-d").to_string(),
+                (_, true) if day.is_multiple_of(7) => date.format("%b %-d").to_string(),
+                (_, false) if date.day() == 1 => date.format("%b").to_string(),
+                _ => continue,
+            };
+            let col = self.col_of(day);
+            if col < free || col + 1 + text.len() > self.cols {
+                continue;
+            }
+            pen.put(self.side + col, self.axis, if ascii { "|" } else { "╷" }, Role::Quiet);
+            pen.put(self.side + col + 1, self.axis, &text, Role::Quiet);
+            free = col + text.len() + 2;
+        }
+        if let Some(day) = picture.cursor.filter(|d| *d < self.days) {
+            let col = self.side + self.col_of(day);
+            let parts =
+                [Some(self.water), Some(self.release), self.cold, Some((self.moves, 2 + self.gates.1))];
+            for row in parts.into_iter().flatten().flat_map(|(from, rows)| from..from + rows) {
+                pen.fill(col, row, if ascii { "|" } else { "│" }, Role::Strong);
+            }
+            pen.put(col, self.axis, "^", Role::Chosen);
+        }
+    }
+}
+
+/// The day that a column shows: the one in its middle.
+fn day_of(col: usize, cols: usize, days: usize) -> usize {
+    ((2 * col + 1) * days / (2 * cols.max(1))).min(days.saturating_sub(1))
+}
+
+/// The column of a day: that of its middle.
+fn col_of(day: usize, cols: usize, days: usize) -> usize {
+    ((2 * day + 1) * cols / (2 * days.max(1))).min(cols.saturating_sub(1))
+}
+
+/// Edges of the bands of a picture, rising, in the unit shown: round, and no more bands than can be told apart. A
+/// threshold inside becomes an edge of its own, in place of one it would all but touch.
+pub(super) fn bands(
+    span: (f64, f64),
+    threshold: Option<f64>,
+    dimension: Dimension,
+    system: System,
+) -> Vec<f64> {
+    let unit = system.unit(dimension);
+    let (low, high) = (unit.from_si(span.0), unit.from_si(span.1));
+    // water of one value fills one band
+    let high = if high > low { high } else { low + 1.0 };
+    let mut edges = ticks(low, high, BANDS - 1);
+    let (Some(first), Some(last)) = (edges.first().copied(), edges.last().copied()) else {
+        return vec![low, high];
+    };
+    let step = (last - first) / (edges.len() - 1).max(1) as f64;
+    if let Some(at) = threshold.map(|v| unit.from_si(v)).filter(|at| first < *at && *at < last) {
+        let ends = |edge: f64| edge <= first || edge >= last;
+        edges.retain(|edge| ends(*edge) || (edge - at).abs() > TOUCHES * step);
+        edges.push(at);
+        edges.sort_by(f64::total_cmp);
+    }
+    edges
+}
+
+/// How a value is counted on an axis and the name of that: volumes in thousands or millions where they are large.
+pub fn counted(dimension: Dimension, system: System, greatest: f64) -> (f64, String) {
+    let unit = system.unit(dimension);
+    let shown = unit.from_si(greatest).abs();
+    let (times, word) = match dimension {
+        Dimension::Volume if shown >= 2e6 => (1e6, "million "),
+        Dimension::Volume if shown >= 2e3 => (1e3, "thousand "),
+        _ => (1.0, ""),
+    };
+    (times, format!("{word}{}", unit.symbol()))
+}
+
+/// The scale of values in the unit shown, round for so many rows.
+pub(super) fn scale(low: f64, high: f64, rows: usize) -> Scale {
+    Scale::round(low, high, 1e-6 * high.abs().max(1.0), steps(rows))
+}
+
+/// Ticks that so many rows have room for.
+pub(super) fn steps(rows: usize) -> u32 {
+    u32::try_from(rows / 2).unwrap_or(4).clamp(2, 5)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn law_a_column_and_its_day_find_each_other() {
+        for days in 1..250 {
+            for cols in [1, 2, 17, 36, 80, 210, 300] {
+                let (mut before, mut seen) = (0, 0);
+                for col in 0..cols {
+                    let day = day_of(col, cols, days);
+                    assert!(day < days && day >= before);
+                    before = day;
+                    if days >= cols {
+                        assert_eq!(col_of(day, cols, days), col, "{days} days on {cols} columns");
+                    }
+                }
+                for day in 0..days {
+                    let col = col_of(day, cols, days);
+                    assert!(col < cols && col >= seen);
+                    seen = col;
+                    if days <= cols {
+                        assert_eq!(day_of(col, cols, days), day, "{days} days on {cols} columns");
+                    }
+                }
+            }
+        }
+    }
+
+    #[test]
+    fn scenario_bands_are_round_and_few() {
+        let c = |low, high, at| bands((low, high), at, Dimension::Temperature, System::Si);
+        assert_eq!(c(4.2, 23.8, None), [0.0, 5.0, 10.0, 15.0, 20.0, 25.0]);
+        assert_eq!(c(4.2, 23.8, Some(12.0)), [0.0, 5.0, 10.0, 12.0, 15.0, 20.0, 25.0]);
+        assert_eq!(c(4.2, 23.8, Some(10.5)), [0.0, 5.0, 10.5, 15.0, 20.0, 25.0]);
+        assert_eq!(c(4.2, 23.8, Some(0.1)), [0.0, 0.1, 5.0, 10.0, 15.0, 20.0, 25.0]);
+        assert_eq!(c(7.0, 7.0, Some(30.0)).first(), Some(&7.0));
+        let f = bands((5.0, 24.0), None, Dimension::Temperature, System::Us);
+        assert_eq!(f, [40.0, 50.0, 60.0, 70.0, 80.0]);
+        for k in 1..60 {
+            let bands = c(3.3, 3.3 + 0.7 * f64::from(k), Some(5.1));
+            assert!(bands.len() <= BANDS as usize + 1 && bands.len() >= 2, "{bands:?}");
+            assert!(bands.is_sorted(), "{bands:?}");
+        }
+    }
+
+    #[test]
+    fn scenario_volumes_are_counted_in_what_is_read_at_a_glance() {
+        let of = |m3| counted(Dimension::Volume, System::Si, m3);
+        assert_eq!((of(5e7), of(4e4)), ((1e6, "million m3".into()), (1e3, "thousand m3".into())));
+        assert_eq!(of(900.0).0, 1.0);
+        assert_eq!(counted(Dimension::Temperature, System::Us, 2e7), (1.0, "F".into()));
+    }
+}

@@ -1,0 +1,179 @@
+//! The date read, and what comes of the season: beside the pictures.
+
+use chrono::NaiveDate;
+
+use crate::mix::Setting;
+use crate::problem::harmless;
+use crate::report::text::season::exhausted_words;
+use crate::report::text::{missed, setting_words};
+use crate::season::{Exhausted, GateMoves, SeasonDay};
+use crate::target::Standing;
+use crate::tui::draw::season::counted;
+use crate::tui::look::Role;
+use crate::units::{Dimension, System, figure, in_system, show};
+
+use super::super::scroll::{Lines, say};
+use super::Screen;
+
+/// Columns from which a date has its day of the week (choice: with it and three digits each it still has one row).
+const FULL: usize = 32;
+
+/// Everything beside the pictures, wrapped.
+pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
+    let mut out = Lines::new();
+    if let Some(words) = screen.old_words() {
+        say(&mut out, words, width, 2, Role::Old);
+    }
+    let days = &screen.shown.run.run.days;
+    match screen.day().and_then(|i| Some((i, days.get(i)?))) {
+        Some((i, day)) => of_day(screen, (i, day), width, &mut out),
+        None => say(&mut out, "the season has no day", width, 2, Role::Outside),
+    }
+    out.push((String::new(), Role::Plain));
+    of_season(screen, width, &mut out);
+    out
+}
+
+/// The date read.
+fn of_day(screen: &Screen, (i, day): (usize, &SeasonDay), width: usize, out: &mut Lines) {
+    let (system, site) = (screen.model.system(), screen.site());
+    let mut add = |text: &str, role| say(out, text, width, 2, role);
+    let value = |v: f64, dimension, decimals| show(v, dimension, system, decimals);
+    let flow = |m3s: f64| value(m3s, Dimension::Flow, u8::from(system == System::Si));
+    let c = |c: f64| value(c, Dimension::Temperature, 1);
+    let count = screen.shown.run.run.days.len();
+    let date = day.date.format(if width < FULL { "%Y-%m-%d" } else { "%a %Y-%m-%d" });
+    add(&format!("{date} day {} of {count}", i + 1), Role::Strong);
+    let pool = value(day.pool_m, Dimension::Length, 1);
+    add(&format!("pool {pool}, inflow {}", flow(day.inflow_m3s)), Role::Plain);
+    let oxygen = |o: Option<f64>| o.map_or_else(|| "oxygen ?".to_owned(), |o| format!("{o:.1} mg/L"));
+    let release = &day.release;
+    let words = format!(
+        "release {}: {}, {}",
+        flow(release.flow_m3s),
+        c(release.temperature_c),
+        oxygen(release.oxygen_below_mg_l)
+    );
+    add(&words, Role::Tried);
+    if let Some(point) = screen.point() {
+        let figures = day.points.as_ref().and_then(|p| p.get(point));
+        let words = figures.map_or_else(
+            || "not known".to_owned(),
+            |f| format!("{}, {}", c(f.mean_c), oxygen(f.oxygen_mean_mg_l)),
+        );
+        add(&format!("{}: {words}", screen.place()), Role::Tried);
+    }
+    let (words, role) = standing(screen, day);
+    add(&words, role);
+    if let Some([low, high]) = reach(screen, day.date) {
+        let (low, high) = (figure(low, system.unit(Dimension::Temperature), 1), c(high));
+        add(&format!("attainable {low} to {high}"), Role::Plain);
+    }
+    if let Some(cold) = screen.shown.run.outcome.cold.first()
+        && let Some(of) = cold.days.get(i)
+    {
+        let (times, unit) = counted(Dimension::Volume, system, of.total_m3);
+        let volume = |m3: f64| format!("{:.1}", system.unit(Dimension::Volume).from_si(m3) / times);
+        let usable =
+            of.usable_m3.map_or_else(|| "none usable".to_owned(), |m3| format!("{} usable", volume(m3)));
+        let words = format!("below {}: {usable} of {} {unit}", c(cold.threshold_c), volume(of.total_m3));
+        add(&words, Role::Cold);
+    }
+    let setting = Setting { gates: day.gates.clone(), ..Setting::default() };
+    add(&format!("set: {}", setting_words(site, &setting, system)), Role::Plain);
+    let calendar = &screen.shown.run.outcome.calendar;
+    if let Some(on) = calendar.iter().rev().find(|on| on.date <= day.date) {
+        add(&format!("since {}: {}", on.date.format("%m-%d"), why(on, screen)), Role::Quiet);
+    }
+    if let Some(next) = calendar.iter().find(|on| on.date > day.date) {
+        let book = next.book_by.map_or_else(String::new, |by| format!(", book by {}", by.format("%m-%d")));
+        let moves = plural(next.moved.len() as u64, "move");
+        add(&format!("next {}: {moves}{book}", next.date.format("%m-%d")), Role::Quiet);
+    }
+    if day.overturned {
+        add("the pool overturns", Role::Warn);
+    }
+}
+
+/// Why gates were moved.
+fn why(on: &GateMoves, screen: &Screen) -> String {
+    match &on.forced {
+        Some((_, words)) => format!("FORCED, {}", harmless(&in_system(words, screen.model.system()))),
+        None => format!("decided, {} moved", on.moved.len()),
+    }
+}
+
+/// What is asked at the place looked at, and how the day stands.
+fn standing(screen: &Screen, day: &SeasonDay) -> (String, Role) {
+    let system = screen.model.system();
+    let oxygen = screen.session.season.oxygen;
+    let dimension = if oxygen { Dimension::Concentration } else { Dimension::Temperature };
+    let value = |v: f64| show(v, dimension, system, 1);
+    let asked = screen.asked(day.date);
+    let words = match asked {
+        [None, None] => return (format!("nothing is asked at {}", screen.place()), Role::Quiet),
+        [Some(low), None] => format!("asked {} at least", value(low)),
+        [None, Some(high)] => format!("asked {} at most", value(high)),
+        [Some(low), Some(high)] => {
+            format!("asked {} to {}", figure(low, system.unit(dimension), 1), value(high))
+        }
+    };
+    let difference = if oxygen { dimension } else { Dimension::TemperatureDifference };
+    let unit = system.unit(difference);
+    let off = |standing, by: f64| {
+        (format!("{words}: {}", missed(standing, unit.from_si(by), unit.symbol())), Role::Outside)
+    };
+    match (screen.value(day), asked) {
+        (None, _) => (format!("{words}: UNKNOWN"), Role::Warn),
+        (Some(v), [Some(low), _]) if v < low => off(Standing::Below, low - v),
+        (Some(v), [_, Some(high)]) if v > high => off(Standing::Above, v - high),
+        _ => (format!("{words}: inside"), Role::Inside),
+    }
+}
+
+/// What is within reach, as the last decision found it.
+fn reach(screen: &Screen, date: NaiveDate) -> Option<[f64; 2]> {
+    let reached = &screen.shown.run.outcome.reached;
+    reached.iter().rev().find(|on| on.date <= date)?.attainable_c
+}
+
+/// The figures people decide by.
+fn of_season(screen: &Screen, width: usize, out: &mut Lines) {
+    let (context, run, system) = (&screen.shown.ahead.context, screen.shown.run, screen.model.system());
+    let outcome = &run.outcome;
+    let mut add = |text: &str, role| say(out, text, width, 2, role);
+    if let Some(ended) = &run.run.ended {
+        let words = format!("! STOPS on {}: {}", ended.date, harmless(&in_system(&ended.words, system)));
+        add(&words, Role::Outside);
+    }
+    let date = |of: &Exhausted| (exhausted_words(of), of.on().is_some());
+    let told = |name: &str, (words, on): (String, bool)| {
+        (format!("{name}: {words}"), if on { Role::Outside } else { Role::Plain })
+    };
+    let (words, role) = told("out of reach", date(&outcome.exhausted));
+    add(&words, role);
+    if let Some(reserve) = &outcome.under_reserve {
+        let (words, role) = told("under the reserve", date(reserve));
+        add(&words, role);
+    }
+    let outside = outcome.score.days_outside;
+    let words = format!("{} outside the hard targets", plural(u64::from(outside), "day"));
+    add(&words, if outside > 0 { Role::Outside } else { Role::Plain });
+    for told in &outcome.targets {
+        let Some(rule) = context.site().targets.get(told.target) else { continue };
+        let days = plural(u64::from(told.days_outside()), "day");
+        let wish = if rule.soft { ", a wish" } else { "" };
+        let words = format!("- {} at {}{wish}: {days}", harmless(&rule.name), harmless(&rule.point));
+        add(&words, if told.days_outside() > 0 && !rule.soft { Role::Outside } else { Role::Plain });
+    }
+    add(&format!("{} gates moved, {:.0} crew hours", outcome.moves, outcome.crew_hours), Role::Plain);
+    for warning in &outcome.warnings {
+        let words = harmless(&in_system(&warning.words, system));
+        add(&format!("! {}: {words}", warning.date.format("%m-%d")), Role::Warn);
+    }
+}
+
+/// `1 day`, `3 days`.
+fn plural(count: u64, word: &str) -> String {
+    if count == 1 { format!("1 {word}") } else { format!("{count} {word}s") }
+}
