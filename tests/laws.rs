@@ -26,10 +26,10 @@ mod season;
 mod series;
 #[path = "laws/shape.rs"]
 mod shape;
-#[path = "laws/thrift/mod.rs"]
-mod thrift;
 #[path = "laws/skies.rs"]
 mod skies;
+#[path = "laws/thrift/mod.rs"]
+mod thrift;
 #[path = "laws/weather.rs"]
 mod weather;
 #[path = "laws/wells/mod.rs"]
