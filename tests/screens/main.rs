@@ -2,6 +2,7 @@
 
 #![allow(clippy::unwrap_used, reason = "a test stops at its first surprise")]
 
+mod ahead;
 mod arriving;
 mod downstream;
 mod driver;
@@ -12,6 +13,7 @@ mod numbers;
 #[cfg(unix)]
 mod pty;
 mod screens;
+mod seasons;
 mod sites;
 mod storm;
 #[cfg(unix)]

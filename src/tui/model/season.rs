@@ -61,6 +61,17 @@ impl Ahead {
         ];
         self.answer.runs().find(|r| [&r.run.plan, &r.run.case, &r.run.strategy] == names.each_ref())
     }
+
+    /// The season that comes nearest to what is asked: of its plan, then of its strategy, then of its case.
+    fn nearest(&self, asked: &SeasonAsked) -> &SeasonRun {
+        let differs = |name: &Option<String>, own: &str| name.as_ref().is_some_and(|n| n != own);
+        let far = |r: &&SeasonRun| {
+            let run = &r.run;
+            let of = [(&asked.plan, &run.plan), (&asked.strategy, &run.strategy), (&asked.case, &run.case)];
+            of.map(|(name, own)| differs(name, own))
+        };
+        self.answer.runs().min_by_key(far).unwrap_or(&self.answer.main)
+    }
 }
 
 /// What the season screen shows.
@@ -119,7 +130,7 @@ impl Session {
         let newest = || self.ahead.iter().rev();
         let chosen = |ahead: &'_ Ahead| ahead.question.is_beside(&question);
         let now = newest().filter(|a| chosen(a)).find_map(|a| Some((a, a.of(&question.asked)?)));
-        let before = || newest().next().map(|a| (a, a.of(&question.asked).unwrap_or(&a.answer.main)));
+        let before = || newest().next().map(|a| (a, a.nearest(&question.asked)));
         let old = now.is_none();
         now.or_else(before).map(|(ahead, run)| SeasonShown { ahead, run, old })
     }

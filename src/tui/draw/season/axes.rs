@@ -35,6 +35,8 @@ pub(super) type Rows = (usize, usize);
 
 /// Where the parts lie.
 pub(super) struct Frame {
+    /// Row of the bands.
+    pub(super) legend: usize,
     /// Columns left of the plot.
     pub(super) side: usize,
     /// Columns of the plot.
@@ -63,7 +65,8 @@ impl Frame {
         let titles = height >= TALL;
         let gates = if titles { picture.gates.len().min(GATES) } else { 0 };
         // legend, two strips and the axis stand always
-        let room = height - 4 - gates;
+        let title = usize::from(titles);
+        let room = height - 4 - gates - title;
         let curves = 1 + usize::from(picture.cold.is_some());
         let room = room - if titles { curves } else { 0 };
         let mut release = (room * 3 / 10).max(CURVE);
@@ -71,13 +74,13 @@ impl Frame {
         if room < release + cold + CURVE {
             (release, cold) = (room / 2, 0);
         }
-        let title = usize::from(titles);
-        let water = (1, room - release - cold);
+        let water = (1 + title, room - release - cold);
         let release = (water.0 + water.1 + title, release);
         let below = release.0 + release.1;
         let cold = (cold > 0).then_some((below + title, cold));
         let moves = cold.map_or(below, |(from, rows)| from + rows);
         Some(Self {
+            legend: title,
             side,
             cols: width - side,
             titles,
@@ -171,7 +174,7 @@ pub(super) fn bands(
 }
 
 /// How a value is counted on an axis and the name of that: volumes in thousands or millions where they are large.
-pub(super) fn counted(dimension: Dimension, system: System, greatest: f64) -> (f64, String) {
+pub fn counted(dimension: Dimension, system: System, greatest: f64) -> (f64, String) {
     let unit = system.unit(dimension);
     let shown = unit.from_si(greatest).abs();
     let (times, word) = match dimension {

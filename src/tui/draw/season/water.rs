@@ -7,6 +7,7 @@ use unicode_width::UnicodeWidthStr;
 use crate::plot::{Scale, on_rows};
 use crate::tui::draw::pen::{Pen, cut};
 use crate::tui::{Look, Role, Symbols};
+use crate::units::Dimension;
 
 use super::axes::{Frame, bands};
 use super::{GateDay, SeasonPicture, WaterDay};
@@ -139,7 +140,7 @@ fn side(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: Look, row_o
         }
         pen.put(end, row_of(gate.elevation_m), tick, Role::Quiet);
     }
-    let unit = picture.system.unit(crate::units::Dimension::Length);
+    let unit = picture.system.unit(Dimension::Length);
     for (row, names) in taken.iter().enumerate() {
         let text = match names[..] {
             [] => {
@@ -156,16 +157,17 @@ fn side(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: Look, row_o
                 continue;
             }
             [name] => name.to_owned(),
-            [name, ..] => {
+            [name, ..] if names.join(" ").width() > end => {
                 let more = format!("+{}", names.len() - 1);
                 format!("{}{more}", cut(name, end.saturating_sub(more.len() + 1)))
             }
+            _ => names.join(" "),
         };
         pen.put_before(end, top + row, &cut(&text, end), Role::Plain);
     }
 }
 
-/// The bands with their values, then what the marks mean as far as there is room.
+/// The bands with their values, and what the marks mean as far as there is room: after them, or in a row of its own.
 fn legend(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, marks: &Marks, edges: &[f64]) {
     let unit = picture.system.unit(picture.water.dimension);
     // a threshold may not be round
@@ -173,19 +175,25 @@ fn legend(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, marks: &Marks, 
     let mut col = 0;
     for (i, pair) in edges.windows(2).enumerate() {
         let (Some(glyph), [low, high]) = (marks.fill.get(i), pair) else { continue };
-        pen.put(col, 0, &glyph.repeat(2), Role::Band(i));
+        pen.put(col, frame.legend, &glyph.repeat(2), Role::Band(i));
         let text = format!("{}-{}", edge(*low), edge(*high));
-        pen.put(col + 3, 0, &text, Role::Quiet);
+        pen.put(col + 3, frame.legend, &text, Role::Quiet);
         col += text.width() + 5;
     }
-    pen.put(col.saturating_sub(1), 0, unit.symbol(), Role::Quiet);
+    pen.put(col.saturating_sub(1), frame.legend, unit.symbol(), Role::Quiet);
     col += unit.symbol().width() + 1;
+    if frame.legend > 0 {
+        let length = picture.system.unit(Dimension::Length);
+        let title = format!("pool, {}", length.symbol());
+        pen.put(0, 0, &title, Role::Strong);
+        col = title.width() + 3;
+    }
     let meanings = [
         (marks.thermocline, "thermocline"),
         (marks.open, "open"),
-        (marks.zone, "zone"),
+        (marks.zone, "its zone"),
         ("x", "lost"),
-        ("+", "back"),
+        ("+", "usable again"),
     ];
     for (glyph, word) in meanings {
         let wide = word.len() + 4;

@@ -228,28 +228,38 @@ fn cold(screen: &Screen) -> Option<CurvesThrough> {
     })
 }
 
-/// The gates, the highest first.
+/// Outlets this near in elevation share a row, m (choice).
+const SAME_M: f64 = 0.1;
+
+/// The gates, the highest first; those at one elevation as one.
 fn gates(screen: &Screen) -> Vec<GateThrough> {
-    let (site, run) = (screen.site(), screen.shown.run);
-    let usable = |outlet: usize, date: NaiveDate| {
-        run.outcome.gates.iter().filter(|life| life.outlet == outlet).any(|life| {
-            life.first_day.is_some_and(|first| first <= date) && life.last_day.is_none_or(|last| date <= last)
-        })
-    };
-    let of_day = |outlet: usize, day: &SeasonDay| {
-        if day.gates.iter().any(|g| g.outlet == outlet && g.flow_m3s > 0.0) {
-            let drawn = day.drawn.iter().find(|d| d.level.outlets.contains(&outlet));
-            let zone = drawn.and_then(|d| d.zone.as_ref());
-            return GateDay::Open(zone.map(|z| [z.lower.limit_m, z.upper.limit_m]));
+    let (site, days) = (screen.site(), &screen.shown.run.run.days);
+    let mut outlets: Vec<usize> = (0..site.outlets.len()).collect();
+    let place = |i: &usize| site.outlets.get(*i).map_or(0.0, |o| o.centre_m);
+    outlets.sort_by(|a, b| place(b).total_cmp(&place(a)));
+    let gate = |level: &[usize]| {
+        let names = level.iter().filter_map(|i| site.outlets.get(*i)).map(|o| harmless(&o.name));
+        GateThrough {
+            name: names.collect::<Vec<_>>().join(" "),
+            elevation_m: level.first().map_or(0.0, place),
+            days: days.iter().map(|day| state(screen, level, day)).collect(),
         }
-        if usable(outlet, day.date) { GateDay::Shut } else { GateDay::Lost }
     };
-    let gate = |(i, outlet): (usize, &crate::site::Outlet)| GateThrough {
-        name: harmless(&outlet.name),
-        elevation_m: outlet.centre_m,
-        days: run.run.days.iter().map(|day| of_day(i, day)).collect(),
-    };
-    let mut gates: Vec<GateThrough> = site.outlets.iter().enumerate().map(gate).collect();
-    gates.sort_by(|a, b| b.elevation_m.total_cmp(&a.elevation_m));
-    gates
+    outlets.chunk_by(|a, b| (place(a) - place(b)).abs() < SAME_M).map(gate).collect()
+}
+
+/// Whether any of some outlets is open on a day, or could be.
+fn state(screen: &Screen, level: &[usize], day: &SeasonDay) -> GateDay {
+    let open = day.gates.iter().find(|g| level.contains(&g.outlet) && g.flow_m3s > 0.0);
+    if let Some(gate) = open {
+        let drawn = day.drawn.iter().find(|d| d.level.outlets.contains(&gate.outlet));
+        let zone = drawn.and_then(|d| d.zone.as_ref());
+        return GateDay::Open(zone.map(|z| [z.lower.limit_m, z.upper.limit_m]));
+    }
+    let lives = &screen.shown.run.outcome.gates;
+    let usable = lives.iter().filter(|life| level.contains(&life.outlet)).any(|life| {
+        let begun = life.first_day.is_some_and(|first| first <= day.date);
+        begun && life.last_day.is_none_or(|last| day.date <= last)
+    });
+    if usable { GateDay::Shut } else { GateDay::Lost }
 }

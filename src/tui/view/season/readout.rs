@@ -8,11 +8,15 @@ use crate::report::text::season::exhausted_words;
 use crate::report::text::{missed, setting_words};
 use crate::season::{Exhausted, GateMoves, SeasonDay};
 use crate::target::Standing;
+use crate::tui::draw::season::counted;
 use crate::tui::look::Role;
 use crate::units::{Dimension, System, figure, in_system, show};
 
 use super::super::scroll::{Lines, say};
 use super::Screen;
+
+/// Columns from which a date has its day of the week (choice: with it and three digits each it still has one row).
+const FULL: usize = 32;
 
 /// Everything beside the pictures, wrapped.
 pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
@@ -38,7 +42,8 @@ fn of_day(screen: &Screen, (i, day): (usize, &SeasonDay), width: usize, out: &mu
     let flow = |m3s: f64| value(m3s, Dimension::Flow, u8::from(system == System::Si));
     let c = |c: f64| value(c, Dimension::Temperature, 1);
     let count = screen.shown.run.run.days.len();
-    add(&format!("{} day {} of {count}", day.date.format("%a %Y-%m-%d"), i + 1), Role::Strong);
+    let date = day.date.format(if width < FULL { "%Y-%m-%d" } else { "%a %Y-%m-%d" });
+    add(&format!("{date} day {} of {count}", i + 1), Role::Strong);
     let pool = value(day.pool_m, Dimension::Length, 1);
     add(&format!("pool {pool}, inflow {}", flow(day.inflow_m3s)), Role::Plain);
     let oxygen = |o: Option<f64>| o.map_or_else(|| "oxygen ?".to_owned(), |o| format!("{o:.1} mg/L"));
@@ -67,10 +72,12 @@ fn of_day(screen: &Screen, (i, day): (usize, &SeasonDay), width: usize, out: &mu
     if let Some(cold) = screen.shown.run.outcome.cold.first()
         && let Some(of) = cold.days.get(i)
     {
-        let volume = |m3: f64| value(m3, Dimension::Volume, 0);
+        let (times, unit) = counted(Dimension::Volume, system, of.total_m3);
+        let volume = |m3: f64| format!("{:.1}", system.unit(Dimension::Volume).from_si(m3) / times);
         let usable =
             of.usable_m3.map_or_else(|| "none usable".to_owned(), |m3| format!("{} usable", volume(m3)));
-        add(&format!("below {}: {usable} of {}", c(cold.threshold_c), volume(of.total_m3)), Role::Cold);
+        let words = format!("below {}: {usable} of {} {unit}", c(cold.threshold_c), volume(of.total_m3));
+        add(&words, Role::Cold);
     }
     let setting = Setting { gates: day.gates.clone(), ..Setting::default() };
     add(&format!("set: {}", setting_words(site, &setting, system)), Role::Plain);
@@ -141,9 +148,9 @@ fn of_season(screen: &Screen, width: usize, out: &mut Lines) {
     }
     let date = |of: &Exhausted| (exhausted_words(of), of.on().is_some());
     let told = |name: &str, (words, on): (String, bool)| {
-        (format!("{name} {words}"), if on { Role::Outside } else { Role::Plain })
+        (format!("{name}: {words}"), if on { Role::Outside } else { Role::Plain })
     };
-    let (words, role) = told("target out of reach from", date(&outcome.exhausted));
+    let (words, role) = told("out of reach", date(&outcome.exhausted));
     add(&words, role);
     if let Some(reserve) = &outcome.under_reserve {
         let (words, role) = told("under the reserve", date(reserve));
@@ -164,7 +171,6 @@ fn of_season(screen: &Screen, width: usize, out: &mut Lines) {
         let words = harmless(&in_system(&warning.words, system));
         add(&format!("! {}: {words}", warning.date.format("%m-%d")), Role::Warn);
     }
-    add("t table, g gates and moves", Role::Quiet);
 }
 
 /// `1 day`, `3 days`.

@@ -1,0 +1,175 @@
+//! Invented seasons for the season screen: a pool that falls, a gate that is lost, a target missed late. They answer a
+//! question at once, so that what the screen does with answers can be tried without running any.
+
+use std::collections::BTreeMap;
+use std::sync::Arc;
+
+use chrono::Days;
+use gatemix::mix::{Asked, Gate, Setting, draw_levels, groups, levels, release};
+use gatemix::season::{
+    Balance, Choosing, Decision, Layers, Plan, PlanDay, Run, SeasonDay, Setup, Skies, Why, outcome,
+};
+use gatemix::site::Strategy;
+use gatemix::tasks::Context;
+use gatemix::tasks::season::{SeasonAnswer, SeasonRun};
+use gatemix::tui::model::{Ahead, SeasonQuestion};
+use gatemix::tui::{Done, Event, Lane, Sent, Work};
+use gatemix::withdrawal::CrestForm;
+
+use crate::driver::Driver;
+
+/// Days of the season, and between its decisions.
+const DAYS: u64 = 120;
+const EVERY: u64 = 7;
+/// Release, m3/s.
+const RELEASE_M3S: f64 = 30.0;
+
+/// Answers the question about the season that waits.
+pub(crate) fn answer(driver: &mut Driver) {
+    let (generation, work) = driver.question(Lane::Ahead).expect("a season is asked for");
+    let Work::Season(question) = work else { panic!("the lane is that of the season") };
+    let ahead = invented(question);
+    driver.send(Event::Sent(Sent::Done(Lane::Ahead, generation, Done::Ahead(Ok(Box::new(ahead))))));
+}
+
+/// Seasons of two plans and three cases.
+fn invented(question: SeasonQuestion) -> Ahead {
+    let context = Arc::new(question.base.changed(&question.changed).unwrap());
+    let asked = &question.asked;
+    let strategy = asked.strategy.clone().unwrap_or_else(|| "best".to_owned());
+    let plan = asked.plan.clone().unwrap_or_else(|| "early".to_owned());
+    let case = asked.case.clone().unwrap_or_else(|| "middling".to_owned());
+    let other = if plan == "early" { "late" } else { "early" };
+    let cases = context.site().season.cases.iter().map(|c| c.name.clone()).filter(|name| *name != case);
+    let mut main = season(&context, &plan, &case, &strategy);
+    main.foresight = strategy == "thrift";
+    let others = cases.map(|name| season(&context, &plan, &name, &strategy));
+    let others: Vec<SeasonRun> = others.chain([season(&context, other, &case, &strategy)]).collect();
+    let begins = context.on.date_naive();
+    let answer = SeasonAnswer {
+        main,
+        others,
+        begins,
+        decides: begins,
+        decide_days: 7,
+        notes: Vec::new(),
+        fingerprint: context.fingerprint.clone(),
+    };
+    Ahead { question, context, answer }
+}
+
+/// A pool that loses its upper water, a little warmer each day.
+fn season(context: &Context, plan: &str, case: &str, strategy: &str) -> SeasonRun {
+    let site = context.site();
+    let begins = context.on.date_naive();
+    let dates: Vec<_> = (0..DAYS).map(|i| begins.checked_add_days(Days::new(i)).unwrap()).collect();
+    let warmer = match case {
+        "warm" => 4.0,
+        "cool" => 0.0,
+        _ => 2.0,
+    };
+    let fall = if plan == "early" { 0.6 } else { 0.4 };
+    let start = Layers::of_profile(site, &context.profile, 1.0).unwrap();
+    let begin = start.volume_m3();
+    let mut decisions: Vec<Decision> = Vec::new();
+    let days = dates.iter().zip(0..DAYS).map(|(date, i)| {
+        let share = i as f64 / DAYS as f64;
+        let mut layers = start.clone();
+        let mut left = begin * (1.0 - fall * share);
+        layers.layers.retain_mut(|layer| {
+            layer.temperature_c += warmer * share;
+            layer.volume_m3 = layer.volume_m3.min(left);
+            left -= layer.volume_m3;
+            layer.volume_m3 > 0.0
+        });
+        let pool_m = layers.pool_m(&site.pool);
+        // the upper gate as long as it has water over it, then the lower
+        let outlet = usize::from(pool_m < 56.0);
+        let gates = vec![Gate { outlet, opening: 1.0, flow_m3s: RELEASE_M3S }];
+        let moved = decisions.last().is_none_or(|d| d.asked.direct != gates);
+        if moved || i.is_multiple_of(EVERY) {
+            let why = if decisions.is_empty() { Why::Begin } else { Why::Due };
+            decisions.push(Decision {
+                date: *date,
+                why,
+                asked: Asked { direct: gates.clone(), ..Asked::default() },
+                moves: if moved { 2 } else { 0 },
+                crew_hours: 1.0,
+                attainable_c: Some([6.0 + 3.0 * share, 18.0]),
+            });
+        }
+        let column = layers.column(site).unwrap();
+        let setting = Setting::of(gates.clone());
+        let drawn = draw_levels(
+            &column,
+            &levels(site, &groups(site), &setting, pool_m, 0.5, CrestForm::default()),
+            1.0,
+        );
+        let release = release(&drawn).unwrap();
+        SeasonDay {
+            date: *date,
+            pool_m,
+            inflow_m3s: 12.0,
+            gates,
+            drawn,
+            release,
+            points: None,
+            layers,
+            balance: Balance::default(),
+            overturned: false,
+        }
+    });
+    let days: Vec<SeasonDay> = days.collect();
+    let run = Run {
+        plan: plan.to_owned(),
+        case: case.to_owned(),
+        strategy: strategy.to_owned(),
+        start: start.clone(),
+        days,
+        decisions,
+        ended: None,
+        aims: (strategy == "thrift").then(|| Arc::new(Vec::new())),
+    };
+    let plan = Arc::new(Plan {
+        name: plan.to_owned(),
+        file: format!("plans/{plan}.csv"),
+        days: dates
+            .iter()
+            .map(|date| PlanDay {
+                date: *date,
+                pool_m: None,
+                release_m3s: Some(RELEASE_M3S),
+                inflow_m3s: 12.0,
+                inflow_c: 12.0,
+                inflow_mg_l: None,
+                inflow_salt_g_per_kg: None,
+                inflow_suspended_mg_l: None,
+            })
+            .collect(),
+        outages: Vec::new(),
+        notes: Vec::new(),
+    });
+    let of_case = site.season.cases.iter().find(|c| c.name == case).unwrap().clone();
+    let skies = Arc::new(Skies {
+        case: of_case,
+        year: None,
+        days: BTreeMap::new(),
+        site: Arc::new(site.clone()),
+        conditions: context.conditions.clone(),
+        from: "invented".to_owned(),
+    });
+    let outcome = {
+        let setup = Setup {
+            start: &context.profile,
+            begins,
+            decides: begins,
+            now: None,
+            plan: &plan,
+            skies: &skies,
+            choosing: Choosing::By(Strategy::Best),
+            decide_days: 7,
+        };
+        outcome(&setup, &run)
+    };
+    SeasonRun { plan, skies, run, outcome, foresight: false }
+}

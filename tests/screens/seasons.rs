@@ -1,0 +1,129 @@
+//! The season screen: asked when it is looked at, stopped, asked again; plans, cases and strategies; a date read.
+
+use gatemix::tui::model::{Cell, SeasonPage, Session};
+use gatemix::tui::{Lane, Symbols};
+
+use crate::ahead::answer;
+use crate::driver::Driver;
+use crate::screens::{NORMAL, SMALL, WIDE};
+use crate::sites::usual;
+
+/// The season screen with an invented answer.
+fn opened(name: &str) -> Driver {
+    let mut driver = Driver::open(Some(&usual(name)), NORMAL);
+    driver.held = true;
+    driver.symbols(Symbols::Ascii).keys("5");
+    answer(&mut driver);
+    driver
+}
+
+/// Plan, case and strategy shown, and whether they are what is chosen.
+fn shown(session: &Session) -> (String, bool) {
+    let shown = session.season_shown().unwrap();
+    let run = &shown.run.run;
+    (format!("{} {} {}", run.plan, run.case, run.strategy), shown.old)
+}
+
+#[test]
+fn scenario_a_season_is_asked_when_looked_at_stopped_and_asked_again() {
+    let mut driver = Driver::open(Some(&usual("season-asked")), NORMAL);
+    driver.held = true;
+    assert!(driver.question(Lane::Ahead).is_none(), "nobody looks at it yet");
+    driver.keys("5");
+    assert!(driver.text().contains("computing the season"), "{}", driver.text());
+    driver.keys("Esc");
+    assert!(
+        driver.question(Lane::Ahead).is_none() && driver.text().contains("Stopped; r"),
+        "{}",
+        driver.text()
+    );
+    driver.keys("r");
+    answer(&mut driver);
+    assert_eq!(shown(driver.session()), ("early middling best".into(), false));
+    // back again nothing needs to be asked; another pool makes it one of before
+    driver.keys("1 5");
+    assert!(driver.question(Lane::Ahead).is_none());
+    driver.model.session_mut().unwrap().mix.cell = Cell::Pool;
+    driver.keys("2 Enter").typed("58.5m").keys("Enter 5");
+    assert_eq!(shown(driver.session()), ("early middling best".into(), true));
+    assert!(driver.text().contains("FROM BEFORE"), "{}", driver.text());
+    answer(&mut driver);
+    assert_eq!(shown(driver.session()), ("early middling best".into(), false));
+}
+
+#[test]
+fn scenario_cases_and_plans_are_there_at_once_and_a_strategy_is_asked_for() {
+    let mut driver = opened("season-chosen");
+    for (key, now) in [
+        ("c", "early cool best"),
+        ("c", "early warm best"),
+        ("c", "early middling best"),
+        ("p", "late middling best"),
+    ] {
+        driver.keys(key);
+        assert_eq!(shown(driver.session()), (now.into(), false), "{}", driver.text());
+        assert!(driver.question(Lane::Ahead).is_none(), "{now} is known");
+    }
+    // of the other plan no other case is known
+    driver.keys("c");
+    assert_eq!(shown(driver.session()), ("late middling best".into(), true));
+    answer(&mut driver);
+    assert_eq!(shown(driver.session()), ("late cool best".into(), false));
+    driver.keys("s");
+    answer(&mut driver);
+    let text = driver.text();
+    assert_eq!(shown(driver.session()), ("late cool thrift".into(), false), "{text}");
+    assert!(text.contains("SOLVED ON THIS CASE"), "{text}");
+    driver.keys("c");
+    assert!(driver.text().contains("this case was not seen"), "{}", driver.text());
+    // r solves on this one
+    driver.keys("r");
+    answer(&mut driver);
+    assert!(driver.text().contains("SOLVED ON THIS CASE"), "{}", driver.text());
+    // what is computed once is kept
+    driver.keys("s");
+    assert_eq!(shown(driver.session()), ("late warm thrift".into(), true), "hold is on its way");
+    driver.keys("s");
+    assert_eq!(shown(driver.session()), ("late warm best".into(), false));
+}
+
+#[test]
+fn scenario_a_date_is_read_by_days_weeks_and_moves() {
+    let mut driver = opened("season-read");
+    let at = |driver: &mut Driver, keys: &str| {
+        let text = driver.keys(keys).text();
+        let told = text.lines().find_map(|l| l.strip_suffix(" of 120")?.rsplit_once(" day "));
+        told.unwrap_or_else(|| panic!("no date is read:\n{text}")).1.parse::<u64>().unwrap()
+    };
+    assert_eq!(at(&mut driver, "Right Right"), 3);
+    assert_eq!(at(&mut driver, "]"), 10);
+    assert_eq!(at(&mut driver, "[ Left"), 2);
+    assert_eq!(at(&mut driver, "End"), 120);
+    assert_eq!(at(&mut driver, "Right"), 120);
+    let moved = at(&mut driver, "<");
+    assert!((2..120).contains(&moved), "{moved}");
+    assert!(driver.text().contains("set: Lower"), "{}", driver.text());
+    assert_eq!(at(&mut driver, "Left"), moved - 1);
+    assert!(driver.text().contains("set: Upper"), "{}", driver.text());
+    assert_eq!(at(&mut driver, "Home"), 1);
+}
+
+#[test]
+fn scenario_pages_of_the_season() {
+    let mut driver = opened("season-pages");
+    driver.keys("t");
+    assert_eq!(driver.session().season.page, SeasonPage::Beside);
+    let text = driver.text();
+    for piece in ["> early, middling, best", "early, warm, best", "late, middling, best", "runs out"] {
+        assert!(text.contains(piece), "{piece}:\n{text}");
+    }
+    driver.keys("g");
+    assert!(driver.text().contains("Gates and moves by date"), "{}", driver.text());
+    driver.keys("Esc x");
+    assert!(driver.text().contains("mg/L") && driver.session().season.oxygen, "{}", driver.text());
+    for size in [NORMAL, WIDE, SMALL, (72, 20)] {
+        println!("{}", driver.resize(size).text());
+        println!("{}", driver.keys("x").text());
+        driver.keys("x");
+    }
+}
