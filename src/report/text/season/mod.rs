@@ -33,7 +33,7 @@ pub(super) fn body(context: &Context, answer: &SeasonAnswer) -> String {
         out.push_str(&labelled(label, &words));
     }
     out.push('\n');
-    out.push_str(&side::table(context, answer, system));
+    out.push_str(&side::table(answer, system));
     out.push_str(&section("Cold water", cold(context, &answer.main, system)));
     out.push_str(&section("Gates", gates(context, &answer.main, system)));
     out.push_str(&section("Moves", moves(context, answer, &answer.main, system)));

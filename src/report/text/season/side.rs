@@ -2,7 +2,6 @@
 
 use crate::problem::harmless;
 use crate::season::Exhausted;
-use crate::tasks::Context;
 use crate::tasks::season::{SeasonAnswer, SeasonRun};
 use crate::units::{Dimension, System, figure};
 
@@ -62,12 +61,12 @@ fn date(of: &Exhausted) -> String {
 }
 
 fn in_columns(cells: [&str; 5]) -> String {
-    cells.iter().zip(CELLS).map(|(cell, wide)| format!("{cell:>wide$}")).collect()
+    let wide: Vec<String> = cells.iter().zip(CELLS).map(|(cell, wide)| format!("{cell:>wide$}")).collect();
+    wide.concat()
 }
 
 /// The table in plain columns.
-pub(super) fn table(context: &Context, answer: &SeasonAnswer, system: System) -> String {
-    let _ = context;
+pub(super) fn table(answer: &SeasonAnswer, system: System) -> String {
     let rows = side(answer, system);
     let mut out = String::new();
     for line in columns(&rows) {
