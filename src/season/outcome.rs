@@ -252,7 +252,7 @@ pub fn outcome(setup: &Setup, run: &Run) -> Outcome {
     Outcome {
         left: cold::left(site, cold.first(), &targets),
         cold,
-        under_reserve: first(reserves.iter().map(|r| &r.1)),
+        under_reserve: first(&reserves.iter().map(|r| &r.1).collect::<Vec<_>>()),
         reserves,
         exhausted: reached::exhausted(site, &reached, run),
         reached,
@@ -284,10 +284,10 @@ fn season_site(setup: &Setup) -> Site {
 }
 
 /// The first day of several; where none has one, the first that is not known, else the end.
-fn first<'a>(all: impl Iterator<Item = &'a Exhausted> + Clone) -> Option<Exhausted> {
-    let on = all.clone().filter_map(Exhausted::on).min().map(Exhausted::On);
-    let not_by = || all.clone().find(|e| matches!(e, Exhausted::NotBy(_))).cloned();
-    on.or_else(not_by).or_else(|| all.clone().next().cloned())
+fn first(all: &[&Exhausted]) -> Option<Exhausted> {
+    let on = all.iter().filter_map(|one| one.on()).min().map(Exhausted::On);
+    let not_by = || all.iter().find(|one| matches!(one, Exhausted::NotBy(_)));
+    on.or_else(|| not_by().or_else(|| all.first()).map(|one| Exhausted::clone(one)))
 }
 
 /// The least of the season; days of which it is not known are passed over.
