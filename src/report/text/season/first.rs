@@ -112,6 +112,15 @@ fn counted(rule: &Target, of: &Tally, system: System) -> String {
     out
 }
 
+/// How far outside a rule: of its oxygen floor, or in the unit of its range.
+pub fn outside_by(rule: &Target, by: f64, oxygen: bool, system: System) -> String {
+    match (oxygen, rule.oxygen_min_mg_l) {
+        (true, Some(_)) => format!("{by:.1} mg/L"),
+        (true, None) => format!("{:.0} % of saturation", 100.0 * by),
+        (false, _) => amounts::by(rule, by, system),
+    }
+}
+
 /// `34 days`.
 pub(super) fn days(count: u32) -> String {
     days_of(f64::from(count))

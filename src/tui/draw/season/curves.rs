@@ -20,7 +20,7 @@ pub(super) fn draw(
     let unit = picture.system.unit(curves.dimension);
     let (times, counted) = counted(curves.dimension, picture.system, curves.span.1);
     let shown = |value: f64| unit.from_si(value) / times;
-    let y = scale(shown(curves.span.0), shown(curves.span.1), rows);
+    let Some(y) = scale(shown(curves.span.0), shown(curves.span.1)) else { return };
     let row_of = |value: f64| top + rows - 1 - y.cell(shown(value), rows).unwrap_or(0);
     let ascii = look.symbols == Symbols::Ascii;
     for col in 0..frame.cols {

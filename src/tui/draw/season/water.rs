@@ -9,18 +9,20 @@ use crate::tui::draw::pen::{Pen, cut};
 use crate::tui::{Look, Role, Symbols};
 use crate::units::Dimension;
 
-use super::axes::{Frame, bands};
-use super::{GateDay, SeasonPicture, WaterDay};
+use super::axes::{BANDS, Frame, edges};
+use super::{GateDay, GateThrough, SeasonPicture, WaterDay};
 
 /// Characters of the bands, the lowest first.
-const DENSE: [&str; 6] = ["█", "▓", "▒", "░", "∶", "·"];
-const PLAIN: [&str; 6] = ["@", "#", "%", "o", ":", "."];
+const DENSE: [&str; BANDS] = ["█", "▓", "▒", "░", ":", "·"];
+const PLAIN: [&str; BANDS] = ["@", "#", "%", "o", ":", "."];
+/// Columns from one mark of a zone to the next.
+const GAPS: usize = 2;
 /// Water of which nothing is known.
 const UNKNOWN: &str = "?";
 
 /// The characters of marks.
 struct Marks {
-    fill: [&'static str; 6],
+    fill: [&'static str; BANDS],
     surface: &'static str,
     thermocline: &'static str,
     open: &'static str,
@@ -35,14 +37,13 @@ fn marks(look: Look) -> Marks {
     }
 }
 
-/// The band of a value in the unit shown, from 0; beyond the bands the nearest.
-pub(super) fn band(edges: &[f64], shown: f64) -> usize {
-    let over = edges.iter().skip(1).take_while(|edge| shown >= **edge).count();
-    over.min(edges.len().saturating_sub(2))
+/// The band of a value in the unit shown, from 0: how many edges it does not lie under.
+fn band(edges: &[f64], shown: f64) -> usize {
+    edges.iter().take_while(|edge| shown >= **edge).count()
 }
 
 /// What stands at an elevation on a day: `None` over the surface and below the bed.
-pub(super) fn at(day: &WaterDay, bed_m: f64, elevation_m: f64) -> Option<Option<f64>> {
+fn at(day: &WaterDay, bed_m: f64, elevation_m: f64) -> Option<Option<f64>> {
     if elevation_m < bed_m {
         return None;
     }
@@ -54,7 +55,7 @@ pub(super) fn draw(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: 
     let (top, rows) = frame.water;
     let Some(scale) = Scale::new(water.elevations_m.0, water.elevations_m.1) else { return };
     let marks = marks(look);
-    let edges = bands(water.span, water.threshold, water.dimension, picture.system);
+    let edges = edges(water.span, water.threshold, water.dimension, picture.system);
     let unit = picture.system.unit(water.dimension);
     let row_of = |elevation_m: f64| top + rows - 1 - scale.cell(elevation_m, rows).unwrap_or(0);
     for col in 0..frame.cols {
@@ -78,34 +79,36 @@ pub(super) fn draw(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: 
                 if middle(row) <= surface_m { row.checked_sub(1).filter(|r| *r >= top) } else { Some(row) };
             row.into_iter().for_each(|row| pen.fill(frame.side + col, row, marks.surface, Role::Plain));
         }
-        if let Some(elevation_m) = day.thermocline_m {
+    }
+    picture.gates.iter().for_each(|gate| zone(gate, frame, pen, &marks, &row_of));
+    for col in 0..frame.cols {
+        let steepest_m = water.days.get(frame.day_of(col)).and_then(|day| day.thermocline_m);
+        if let Some(elevation_m) = steepest_m {
             pen.put(frame.side + col, row_of(elevation_m), marks.thermocline, Role::Strong);
         }
     }
-    for gate in &picture.gates {
-        zones(gate, frame, pen, &marks, &row_of);
-    }
+    picture.gates.iter().for_each(|gate| open(gate, frame, pen, &marks, &row_of));
     side(picture, frame, pen, look, &row_of);
     legend(picture, frame, pen, &marks, &edges);
 }
 
-/// The zone of an open gate, and where it is lost and comes back.
-fn zones(
-    gate: &super::GateThrough,
-    frame: &Frame,
-    pen: &mut Pen,
-    marks: &Marks,
-    row_of: &dyn Fn(f64) -> usize,
-) {
+/// The limits of the zone of an open gate, with gaps through which the water is seen.
+fn zone(gate: &GateThrough, frame: &Frame, pen: &mut Pen, marks: &Marks, row_of: &dyn Fn(f64) -> usize) {
+    for col in (0..frame.cols).step_by(GAPS) {
+        let Some(GateDay::Open(Some(zone))) = gate.days.get(frame.day_of(col)) else { continue };
+        for limit_m in zone {
+            pen.put(frame.side + col, row_of(*limit_m), marks.zone, Role::Zone);
+        }
+    }
+}
+
+/// An open gate, and where it is lost and comes back.
+fn open(gate: &GateThrough, frame: &Frame, pen: &mut Pen, marks: &Marks, row_of: &dyn Fn(f64) -> usize) {
     let row = row_of(gate.elevation_m);
     for col in 0..frame.cols {
-        let Some(GateDay::Open(zone)) = gate.days.get(frame.day_of(col)) else { continue };
-        for limit_m in zone.iter().flatten() {
-            if row_of(*limit_m) != row {
-                pen.put(frame.side + col, row_of(*limit_m), marks.zone, Role::Zone);
-            }
+        if let Some(GateDay::Open(_)) = gate.days.get(frame.day_of(col)) {
+            pen.put(frame.side + col, row, marks.open, Role::Strong);
         }
-        pen.put(frame.side + col, row, marks.open, Role::Strong);
     }
     for (day, lost) in turns(&gate.days) {
         pen.put(frame.side + frame.col_of(day), row, if lost { "x" } else { "+" }, Role::Outside);
@@ -130,7 +133,7 @@ fn side(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: Look, row_o
     let (line, tick) = if ascii { ("|", ">") } else { ("│", "┤") };
     let end = frame.side - 1;
     (top..top + rows).for_each(|row| pen.put(end, row, line, Role::Quiet));
-    let mut gates: Vec<&super::GateThrough> = picture.gates.iter().collect();
+    let mut gates: Vec<&GateThrough> = picture.gates.iter().collect();
     gates.sort_by(|a, b| b.elevation_m.total_cmp(&a.elevation_m));
     let wants: Vec<usize> = gates.iter().map(|g| row_of(g.elevation_m) - top).collect();
     let mut taken: Vec<Vec<&str>> = vec![Vec::new(); rows];
@@ -173,10 +176,15 @@ fn legend(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, marks: &Marks, 
     // a threshold may not be round
     let edge = |v: f64| if (v - v.round()).abs() < 0.05 { format!("{v:.0}") } else { format!("{v:.1}") };
     let mut col = 0;
-    for (i, pair) in edges.windows(2).enumerate() {
-        let (Some(glyph), [low, high]) = (marks.fill.get(i), pair) else { continue };
+    for (i, glyph) in marks.fill.iter().enumerate().take(edges.len() + 1) {
+        let low = i.checked_sub(1).and_then(|i| edges.get(i));
+        let text = match (low, edges.get(i)) {
+            (Some(low), Some(high)) => format!("{}-{}", edge(*low), edge(*high)),
+            (None, Some(high)) => format!("<{}", edge(*high)),
+            (Some(low), None) => format!(">{}", edge(*low)),
+            (None, None) => "all".to_owned(),
+        };
         pen.put(col, frame.legend, &glyph.repeat(2), Role::Band(i));
-        let text = format!("{}-{}", edge(*low), edge(*high));
         pen.put(col + 3, frame.legend, &text, Role::Quiet);
         col += text.width() + 5;
     }
