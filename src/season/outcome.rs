@@ -281,7 +281,7 @@ pub fn outcome(setup: &Setup, run: &Run) -> Outcome {
 }
 
 /// The site of a season: under the air of its case, with the outages of its plan.
-fn season_site(setup: &Setup) -> Site {
+pub(super) fn season_site(setup: &Setup) -> Site {
     let mut site = Site::clone(&setup.skies.site);
     site.limits.outages.extend(setup.plan.outages.iter().cloned());
     site
