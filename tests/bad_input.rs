@@ -24,6 +24,10 @@ mod mutated;
 mod plans;
 #[path = "bad_input/river.rs"]
 mod river;
+#[path = "bad_input/schedules.rs"]
+mod schedules;
+#[path = "bad_input/season.rs"]
+mod season;
 #[path = "bad_input/settings.rs"]
 mod settings;
 #[path = "bad_input/site.rs"]

@@ -11,6 +11,8 @@ use approx::assert_abs_diff_eq;
 use demo::ashlar::{self, Cast, FAULTY, FOOT_M, Site};
 use demo::sorrel::{self, believable::SORREL};
 use demo::water::{density_kg_m3, oxygen_saturation_mg_l};
+use gatemix::files::folder::{Folder, demonstrations};
+use gatemix::problem::Weight;
 
 fn folder(site: &str) -> PathBuf {
     PathBuf::from(env!("CARGO_MANIFEST_DIR")).join("sites").join(site)
@@ -210,5 +212,29 @@ fn published_density_and_oxygen_saturation_of_the_generator() {
     for (t, z, cs) in [(8.0, 0.0, 11.843), (24.0, 0.0, 8.418), (20.0, 500.0, 8.5541), (10.0, 1000.0, 9.9976)]
     {
         assert_abs_diff_eq!(oxygen_saturation_mg_l(t, z), cs, epsilon = 3e-3);
+    }
+}
+
+/// Plans are written by hand.
+#[test]
+fn scenario_plans_are_sound_and_go_from_the_newest_cast_to_the_end_of_november() {
+    for name in demonstrations() {
+        let folder = Folder::demonstration(name).unwrap();
+        let mut named: Vec<&str> = Vec::new();
+        for listed in folder.plans() {
+            let text = &listed.source.as_ref().unwrap().text;
+            assert!(
+                text.lines().next().unwrap().ends_with(": invented plan of an invented place."),
+                "{}",
+                listed.file
+            );
+            let plan = listed.plan.as_deref().unwrap_or_else(|| panic!("{:#?}", listed.problems));
+            assert!(plan.notes.iter().all(|p| p.weight == Weight::Note), "{:#?}", plan.notes);
+            let (first, last) = plan.span().unwrap();
+            assert!(first <= folder.newest_time().unwrap().date_naive() && last.to_string() == "2026-11-30");
+            assert!(!named.contains(&plan.name.as_str()), "{}", plan.name);
+            named.push(&plan.name);
+        }
+        assert!(named.len() >= 3, "{name}: {named:?}");
     }
 }

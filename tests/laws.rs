@@ -28,6 +28,8 @@ mod series;
 mod shape;
 #[path = "laws/skies.rs"]
 mod skies;
+#[path = "laws/thrift/mod.rs"]
+mod thrift;
 #[path = "laws/weather.rs"]
 mod weather;
 #[path = "laws/wells/mod.rs"]

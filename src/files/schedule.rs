@@ -68,7 +68,11 @@ fn read(source: &Source, site: &Site, problems: &mut Vec<Problem>) -> Option<Cha
         };
         if let Some((last, _)) = changes.last().filter(|(last, _)| date <= *last) {
             let cure = "give each day one row, the earlier ones first";
-            let words = format!("{date} comes after {last}");
+            let words = if date == *last {
+                format!("{date} stands there twice")
+            } else {
+                format!("{date} comes after {last}")
+            };
             problems.push(Problem::refused("plan-order", words, cure).on_line(line));
         }
         let mut gates = Vec::new();

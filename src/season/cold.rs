@@ -5,14 +5,13 @@
 use chrono::Datelike;
 
 use crate::mix;
-use crate::river::Conditions;
 use crate::site::{Reserve, Site};
 use crate::target::YearDay;
 
 use super::gates::usable;
 use super::outcome::{ColdDay, ColdWater, Exhausted, Left};
 use super::run::SeasonDay;
-use super::tally::{TargetTally, tallies};
+use super::tally::TargetTally;
 
 /// Lowest elevation that the deepest outlet usable on a day draws from at the release of that day, m; `None` where
 /// none is usable.
@@ -38,23 +37,15 @@ pub(super) fn by_day(
 }
 
 /// What was left below a threshold on the first of every month, with the days outside hard targets that came after.
-pub(super) fn left(
-    site: &Site,
-    conditions: &Conditions,
-    cold: Option<&ColdWater>,
-    days: &[SeasonDay],
-) -> Vec<Left> {
-    let of = |(i, day): (usize, &ColdDay)| {
-        let after = tallies(site, conditions, days.get(i + 1..).unwrap_or_default());
-        let hard = after.iter().filter(|t| site.targets.get(t.target).is_some_and(|rule| !rule.soft));
-        Left {
-            date: day.date,
-            usable_m3: day.usable_m3,
-            days_outside: hard.map(TargetTally::days_outside).sum(),
-        }
+pub(super) fn left(site: &Site, cold: Option<&ColdWater>, targets: &[TargetTally]) -> Vec<Left> {
+    let hard = || targets.iter().filter(|t| site.targets.get(t.target).is_some_and(|rule| !rule.soft));
+    let of = |day: &ColdDay| Left {
+        date: day.date,
+        usable_m3: day.usable_m3,
+        days_outside: hard().map(|t| t.days_outside_after(day.date)).sum(),
     };
-    let first_of_month = |(_, day): &(usize, &ColdDay)| day.date.day() == 1;
-    cold.into_iter().flat_map(|cold| cold.days.iter().enumerate().filter(first_of_month).map(of)).collect()
+    let first_of_month = |day: &&ColdDay| day.date.day() == 1;
+    cold.into_iter().flat_map(|cold| cold.days.iter().filter(first_of_month).map(of)).collect()
 }
 
 /// First day on which usable water colder than a reserve asks is less than it keeps, between its day of the year and

@@ -4,11 +4,11 @@
 
 use chrono::NaiveDate;
 
-use crate::mix::limits::{self, Before, Check, Moves};
+use crate::mix::limits::{self, Before, Check, Move, Moves};
 use crate::mix::{Asked, Day, Drawn, Setting, checks};
 use crate::profile::Profile;
 use crate::rank::{Criterion, Full, Order, Progress, Question, Ranked, Ranking, Stopped, rank};
-use crate::site::Site;
+use crate::site::{Outlet, SAME_OPENING, Site};
 
 use super::refine::refined;
 use super::set::{Flowing, flowing};
@@ -46,8 +46,12 @@ pub struct Decision {
     pub asked: Asked,
     /// Gates moved.
     pub moves: usize,
+    /// Which, from what was set as it would flow on the day; empty where nothing was known to be set.
+    pub moved: Vec<Move>,
     /// Crew hours.
     pub crew_hours: f64,
+    /// Longest notice that a move needs, days.
+    pub lead_days: f64,
     /// Coldest and warmest release that an allowed mix gives, C.
     pub attainable_c: Option<[f64; 2]>,
     /// Limits of the change that it breaks, since no mix keeps them.
@@ -79,6 +83,8 @@ pub(super) struct Chosen {
     pub(super) asked: Asked,
     /// Moves from what is set before.
     pub(super) moves: Moves,
+    /// Which gates move.
+    pub(super) moved: Vec<Move>,
     /// Coldest and warmest release that an allowed mix gives, C.
     pub(super) attainable_c: Option<[f64; 2]>,
     /// Limits of the change that it breaks.
@@ -99,6 +105,7 @@ pub(super) struct Tried {
     pub(super) asked: Asked,
     pub(super) temperature_c: f64,
     moves: Moves,
+    moved: Vec<Move>,
     still: Vec<Check>,
     change: Vec<Check>,
     key: f64,
@@ -146,7 +153,8 @@ impl Choice<'_> {
         tried.map(|tried| self.chosen(tried, &ranking)).ok_or_else(|| none_allowed(self.site, &ranking))
     }
 
-    /// The ranking, and whether it is one without the limits of the change since no mix keeps them.
+    /// The ranking, and whether it is one without the limits of the change since no mix keeps them. Gates stand shut,
+    /// as they stand, or as wide as they go; where that allows no mix, in any of their positions.
     fn ranked(&self, progress: Progress) -> Result<(Ranking, bool), NoMix> {
         let ranked = |site: &Site| {
             rank(&self.question(site), progress).map_err(|stopped| match stopped {
@@ -154,11 +162,17 @@ impl Choice<'_> {
                 Stopped::Refused(problem) => NoMix::Allowed(None, problem.words),
             })
         };
-        let strict = ranked(self.site)?;
-        if strict.mixes.is_empty() {
+        if let Some(coarse) = with_fewer_positions(self.site, self.now) {
+            let ranking = ranked(&coarse)?;
+            if !ranking.mixes.is_empty() {
+                return Ok((ranking, false));
+            }
+        }
+        let ranking = ranked(self.site)?;
+        if ranking.mixes.is_empty() {
             Ok((ranked(&without_change(self.site))?, true))
         } else {
-            Ok((strict, false))
+            Ok((ranking, false))
         }
     }
 
@@ -201,6 +215,7 @@ impl Choice<'_> {
             key: order.key(&Full { temperature_c, oxygen_mg_l, cold_share }, &moves),
             off_c: order.off_c(temperature_c),
             moves,
+            moved: self.now.map_or_else(Vec::new, |now| limits::moved(self.site, now, &setting)),
             still,
             change,
         })
@@ -218,7 +233,7 @@ impl Choice<'_> {
         let attainable_c =
             extremes.map(|[low, high]| [low.min(tried.temperature_c), high.max(tried.temperature_c)]);
         let past = tried.change.into_iter().filter(Check::broken).collect();
-        Chosen { asked: tried.asked, moves: tried.moves, attainable_c, past }
+        Chosen { asked: tried.asked, moves: tried.moves, moved: tried.moved, attainable_c, past }
     }
 }
 
@@ -236,6 +251,24 @@ impl Tried {
             .then(self.off_c.1.total_cmp(&other.off_c.1))
             .is_lt()
     }
+}
+
+/// The site with gates that stand shut, as they stand now, or as wide as they go. `None` where they have no other
+/// positions.
+fn with_fewer_positions(site: &Site, now: Option<&Setting>) -> Option<Site> {
+    let mut coarse = site.clone();
+    // positions with crests of their own are levels of their own
+    let plain = |o: &Outlet| o.positions.iter().all(|p| p.crest_m.is_none());
+    for (index, outlet) in coarse.outlets.iter_mut().enumerate().filter(|(_, o)| plain(o)) {
+        let widest = outlet.positions.iter().map(|p| p.opening).fold(0.0, f64::max);
+        let gates = now.map_or(&[][..], |setting| &setting.gates);
+        let is_now = |opening: f64| {
+            gates.iter().any(|g| g.outlet == index && (g.opening - opening).abs() < SAME_OPENING)
+        };
+        outlet.positions.retain(|p| p.opening <= 0.0 || p.opening >= widest || is_now(p.opening));
+    }
+    let positions = |site: &Site| site.outlets.iter().map(|o| o.positions.len()).sum::<usize>();
+    (positions(&coarse) < positions(site)).then_some(coarse)
 }
 
 /// The site without its limits of a change: moves, crew hours, rates, gates not to be moved under flow.

@@ -4,13 +4,12 @@
 
 use chrono::{Days, NaiveDate};
 
-use crate::mix::Setting;
 use crate::mix::limits::{self, Check};
 use crate::site::{Outlet, Site};
 
 use super::decide::{Decision, Why};
 use super::outcome::{GateLife, GateMoves};
-use super::run::{Run, SeasonDay, Setup};
+use super::run::{Run, SeasonDay};
 
 /// Whether an outlet can be used on a date under a pool (m): at any of its positions, fully open where it has none.
 ///
@@ -90,31 +89,16 @@ fn earlier(date: NaiveDate, days: f64) -> Option<NaiveDate> {
 }
 
 /// What is moved when: the decisions on which a gate moves.
-pub(super) fn moves(site: &Site, setup: &Setup, run: &Run) -> Vec<GateMoves> {
-    let mut before = setup.now.cloned();
-    let mut out = Vec::new();
-    for day in &run.days {
-        let to = Setting::of(day.gates.clone());
-        let decision = run.decisions.iter().find(|d| d.date == day.date);
-        if let (Some(decision), Some(now)) = (decision, &before) {
-            out.extend(moves_of(site, decision, now, &to));
-        }
-        before = Some(to);
-    }
-    out
-}
-
-fn moves_of(site: &Site, decision: &Decision, now: &Setting, to: &Setting) -> Option<GateMoves> {
-    let moved = limits::moved(site, now, to);
-    let takes = limits::moves(site, now, to, &mut Vec::new());
-    (!moved.is_empty()).then(|| GateMoves {
+pub(super) fn moves(site: &Site, run: &Run) -> Vec<GateMoves> {
+    let of = |decision: &Decision| GateMoves {
         date: decision.date,
         forced: match decision.why {
             Why::Forced(check) => Some((check.rule.name(), check.words(site))),
             Why::Begin | Why::Due => None,
         },
-        moved,
-        crew_hours: takes.crew_hours,
-        book_by: earlier(decision.date, takes.lead_days),
-    })
+        moved: decision.moved.clone(),
+        crew_hours: decision.crew_hours,
+        book_by: earlier(decision.date, decision.lead_days),
+    };
+    run.decisions.iter().filter(|d| !d.moved.is_empty()).map(of).collect()
 }

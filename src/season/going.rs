@@ -6,7 +6,7 @@ use std::sync::Arc;
 
 use chrono::{NaiveDate, NaiveTime};
 
-use crate::mix::limits::{Before, Check};
+use crate::mix::limits::{Before, Check, Moves};
 use crate::mix::{Asked, Blend, Day, checks, groups, release};
 use crate::profile::{Column, Profile};
 use crate::rank::Progress;
@@ -326,6 +326,7 @@ impl<'a> Going<'a> {
 }
 
 fn decision(date: NaiveDate, why: Why, chosen: Chosen) -> Decision {
-    let Chosen { asked, moves, attainable_c, past } = chosen;
-    Decision { date, why, asked, moves: moves.count, crew_hours: moves.crew_hours, attainable_c, past }
+    let Chosen { asked, moves, moved, attainable_c, past } = chosen;
+    let Moves { count, crew_hours, lead_days, .. } = moves;
+    Decision { date, why, asked, moves: count, moved, crew_hours, lead_days, attainable_c, past }
 }

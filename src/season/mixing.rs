@@ -11,6 +11,8 @@ use super::layers::Layer;
 const AIR_KG_M3: f64 = 1.2;
 /// Drag of the wind on water (recalled: 1.0e-3 to 1.5e-3 over lakes).
 const DRAG: f64 = 1.3e-3;
+/// Water heavier than the surface layer's by no more than this is mixed with it, kg/m3 (choice).
+const MIXED_KG_M3: f64 = 0.01;
 /// Halvings that find how much of a layer the wind takes in.
 const HALVINGS: usize = 50;
 
@@ -60,6 +62,20 @@ pub(super) fn centre_m(pool: &Pool, low_m: f64, high_m: f64) -> f64 {
         return 0.5 * (low_m + high_m);
     }
     high_m - (high_m - low_m) * (4.0 * half + whole) / (6.0 * whole)
+}
+
+/// The surface layer and those below that are hardly heavier: they answer to the air as one.
+pub(super) fn mixed(layers: &mut [Layer], grain_kg_m3: f64) -> &mut [Layer] {
+    let most = layers.last().map_or(f64::MAX, |top| top.density_kg_m3(grain_kg_m3) + MIXED_KG_M3);
+    let count = layers.iter().rev().take_while(|l| l.density_kg_m3(grain_kg_m3) <= most).count();
+    let first = layers.len() - count;
+    &mut layers[first..]
+}
+
+/// Share of what passes in a first moment that passes over a time in which the water answers: (1 - exp(-x))/x, x the
+/// exchange over what the water holds for each unit (derived: linear exchange).
+pub(super) fn answered(x: f64) -> f64 {
+    if x > 1e-9 { -(-x).exp_m1() / x } else { 1.0 }
 }
 
 /// Mixes neighbours of which the upper is the denser until none is left. Whether that reached from surface to bed.

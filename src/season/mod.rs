@@ -18,6 +18,7 @@ mod gates;
 mod going;
 mod inflow;
 mod layers;
+mod learn;
 mod mixing;
 mod outcome;
 mod outflow;
@@ -42,6 +43,10 @@ pub use decide::{Decision, Why};
 pub use diffusion::{diffuse, diffusivity_m2_s};
 pub use inflow::{Neutral, neutral};
 pub use layers::{Layer, Layers};
+pub use learn::{
+    Apart, DIFFUSION, LEAST_DAYS, LEAST_SAMPLES, LIGHT_PER_M, Learned, Past, WATER_DEMAND_MG_L_DAY, WIND,
+    learn,
+};
 pub use mixing::{friction_velocity_m_s, mixing_energy_j, wind_work_j_m2};
 pub use outcome::{
     Asks, ColdDay, ColdWater, Exhausted, GateLife, GateMoves, Left, Outcome, Reached, StageDate, StageFall,

@@ -200,7 +200,8 @@ pub struct Outcome {
     pub reached: Vec<Reached>,
     /// When every gate can be used.
     pub gates: Vec<GateLife>,
-    /// What is moved when; nothing is told of the first change where the setting now is not known.
+    /// What is moved when, each from what was set as it would flow on the day; nothing is told of the first change where
+    /// the setting now is not known.
     pub calendar: Vec<GateMoves>,
     /// Every target.
     pub targets: Vec<TargetTally>,
@@ -245,18 +246,19 @@ pub fn outcome(setup: &Setup, run: &Run) -> Outcome {
         })
         .collect();
     let reached = reached::reached(setup, site, run);
+    let targets = tallies(site, &setup.skies.conditions, days);
     let cold: Vec<ColdWater> = site.cold_water_c.iter().map(|&c| colder(c)).collect();
     let largest = |of: fn(&SeasonDay) -> f64| days.iter().map(of).fold(0.0, f64::max);
     Outcome {
-        left: cold::left(site, &setup.skies.conditions, cold.first(), days),
+        left: cold::left(site, cold.first(), &targets),
         cold,
-        under_reserve: first(reserves.iter().map(|r| &r.1)),
+        under_reserve: first(&reserves.iter().map(|r| &r.1).collect::<Vec<_>>()),
         reserves,
         exhausted: reached::exhausted(site, &reached, run),
         reached,
         gates: gates::lives(site, days),
-        calendar: gates::moves(site, setup, run),
-        targets: tallies(site, &setup.skies.conditions, days),
+        calendar: gates::moves(site, run),
+        targets,
         score: Score::of(setup, run),
         stages: stages::stages(site, days),
         moves: run.decisions.iter().map(|d| d.moves).sum(),
@@ -282,10 +284,10 @@ fn season_site(setup: &Setup) -> Site {
 }
 
 /// The first day of several; where none has one, the first that is not known, else the end.
-fn first<'a>(all: impl Iterator<Item = &'a Exhausted> + Clone) -> Option<Exhausted> {
-    let on = all.clone().filter_map(Exhausted::on).min().map(Exhausted::On);
-    let not_by = || all.clone().find(|e| matches!(e, Exhausted::NotBy(_))).cloned();
-    on.or_else(not_by).or_else(|| all.clone().next().cloned())
+fn first(all: &[&Exhausted]) -> Option<Exhausted> {
+    let on = all.iter().filter_map(|one| one.on()).min().map(Exhausted::On);
+    let not_by = || all.iter().find(|one| matches!(one, Exhausted::NotBy(_)));
+    on.or_else(|| not_by().or_else(|| all.first()).map(|one| Exhausted::clone(one)))
 }
 
 /// The least of the season; days of which it is not known are passed over.

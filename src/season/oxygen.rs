@@ -6,6 +6,7 @@ use crate::site::Site;
 use crate::water;
 
 use super::layers::Layers;
+use super::mixing;
 
 /// How demand rises with each degree (recalled: 1.065 for beds; taken for the water too, choice).
 const PER_C: f64 = 1.065;
@@ -47,11 +48,16 @@ pub(super) fn breathe(layers: &mut Layers, site: &Site, edges_m: &[f64], seconds
         let demand = demand_at(knobs.water_demand_mg_l_day + bed, layer.temperature_c);
         layer.oxygen_mg_l = left_mg_l(layer.oxygen_mg_l, demand, days);
     }
-    if let (Some(top), Some(&surface_m)) = (layers.layers.last_mut(), edges_m.last()) {
-        let pressure = site.surface_pressure_atm(surface_m);
-        let saturation = water::saturation_mg_l(top.temperature_c, top.salt_g_per_kg, pressure);
-        let depth_m = top.volume_m3 / site.pool.area_m2(surface_m);
-        let share = site.season.transfer_m_day * days / depth_m;
-        top.oxygen_mg_l = (top.oxygen_mg_l + share * saturation) / (1.0 + share);
+    let (Some(top), Some(&surface_m)) = (layers.layers.last(), edges_m.last()) else {
+        return;
+    };
+    let pressure = site.surface_pressure_atm(surface_m);
+    let saturation = water::saturation_mg_l(top.temperature_c, top.salt_g_per_kg, pressure);
+    let mixed = mixing::mixed(&mut layers.layers, site.water.solids_kg_m3);
+    let depth_m = mixed.iter().map(|l| l.volume_m3).sum::<f64>() / site.pool.area_m2(surface_m);
+    // from either side, and never across
+    let gone = site.season.transfer_m_day * days / depth_m;
+    for layer in mixed {
+        layer.oxygen_mg_l += (saturation - layer.oxygen_mg_l) * gone * mixing::answered(gone);
     }
 }

@@ -50,12 +50,13 @@ pub(super) fn exhausted(site: &Site, reached: &[Reached], run: &Run) -> Exhauste
     let Some(end) = run.days.last().map(|day| day.date) else {
         return Exhausted::Unknown("the season has no day".to_owned());
     };
-    let ends: Vec<Option<NaiveDate>> =
-        (0..site.targets.len()).filter_map(|rule| out_of_reach_since(reached, rule)).collect();
-    match (ends.iter().flatten().min(), &run.ended) {
-        (Some(on), _) => Exhausted::On(*on),
+    let ends: Vec<Reach> = (0..site.targets.len()).map(|rule| of_rule(reached, rule)).collect();
+    let since =
+        ends.iter().filter_map(|end| if let Reach::OutSince(date) = end { Some(*date) } else { None });
+    match (since.min(), &run.ended) {
+        (Some(on), _) => Exhausted::On(on),
         (None, Some(ended)) => Exhausted::Unknown(format!("the season stops on {}", ended.date)),
-        (None, None) if ends.is_empty() => {
+        (None, None) if ends.iter().all(|end| *end == Reach::Untold) => {
             let words = "no hard rule at the dam bounds the temperature from above on a day of decision";
             Exhausted::Unknown(words.to_owned())
         }
@@ -63,12 +64,25 @@ pub(super) fn exhausted(site: &Site, reached: &[Reached], run: &Run) -> Exhauste
     }
 }
 
-/// From which day of decision on a rule's high is out of reach to its end, if at all; `None` where no decision tells
-/// of the rule.
-fn out_of_reach_since(reached: &[Reached], rule: usize) -> Option<Option<NaiveDate>> {
+/// How a rule's high ends in the season.
+#[derive(Debug, Clone, Copy, PartialEq)]
+enum Reach {
+    /// No decision tells.
+    Untold,
+    /// On its last day of decision a mix comes down to it.
+    Kept,
+    /// From this day of decision on none does, to its end.
+    OutSince(NaiveDate),
+}
+
+fn of_rule(reached: &[Reached], rule: usize) -> Reach {
     let told = reached.iter().filter_map(|one| {
         let high_c = one.asks.iter().find(|a| a.target == rule)?.high_c?;
         Some((one.date, one.attainable_c?[0] > high_c + SAME_C))
     });
-    told.fold(None, |since, (date, out)| Some(if out { since.flatten().or(Some(date)) } else { None }))
+    told.fold(Reach::Untold, |before, (date, out)| match (out, before) {
+        (false, _) => Reach::Kept,
+        (true, Reach::OutSince(_)) => before,
+        (true, _) => Reach::OutSince(date),
+    })
 }

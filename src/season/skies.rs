@@ -173,10 +173,7 @@ fn season(from: NaiveDate, to: NaiveDate) -> impl Iterator<Item = NaiveDate> {
 
 /// The air of a day before any shift.
 fn base(site: &Site, conditions: &Conditions, date: NaiveDate) -> Option<Air> {
-    let months = site.season.monthly.as_deref().or_else(|| match &site.river.as_ref()?.surface {
-        Some(Surface::Monthly(airs)) => Some(airs),
-        _ => None,
-    });
+    let months = site.season.monthly.as_deref();
     let month = || months.and_then(|airs| airs.get(date.month0() as usize)).copied();
     conditions.weather.day(date).or_else(month)
 }

@@ -7,10 +7,9 @@ use crate::water::{CP_REF_J_KG_K, RHO_REF_KG_M3, latent_heat_j_kg, light_left};
 use crate::weather::{self, Air};
 
 use super::layers::Layer;
+use super::mixing::{self, answered};
 use super::skies::Sky;
 
-/// Water lighter than the surface layer's by no more than this warms and cools with it, kg/m3 (choice).
-const WITH_SURFACE_KG_M3: f64 = 0.01;
 /// Heat of a cubic metre for each degree, J/m3/C, with fixed density and specific heat.
 pub(super) const HEAT_J_M3_C: f64 = RHO_REF_KG_M3 * CP_REF_J_KG_K;
 
@@ -45,12 +44,6 @@ pub(super) fn wind_m_s(sky: &Sky) -> f64 {
     }
 }
 
-/// Share of the heat of a first moment that passes over a time in which the water answers: (1 - exp(-x))/x, x the
-/// exchange over the heat that the water holds for each degree (derived: linear exchange).
-fn answered(x: f64) -> f64 {
-    if x > 1e-9 { -(-x).exp_m1() / x } else { 1.0 }
-}
-
 /// Takes the pool through the exchange of a time (s): light to the layers it reaches, all else to the surface layer.
 pub(super) fn exchange(
     layers: &mut [Layer],
@@ -79,15 +72,21 @@ pub(super) fn exchange(
             (0.0, exchange_w_m2_c * (equilibrium_c - top_c), exchange_w_m2_c, 0.0)
         }
     };
-    let with_surface_m3 = with_surface_m3(layers, site.water.solids_kg_m3);
+    let grain = site.water.solids_kg_m3;
+    let mixed_m3: f64 = mixing::mixed(layers, grain).iter().map(|l| l.volume_m3).sum();
     let Some(top) = layers.last_mut() else {
         return through;
     };
     let of = |volume_m3: f64| exchange_w_m2_c.max(0.0) * area_m2 * seconds / (HEAT_J_M3_C * volume_m3);
-    // the mixed layer answers as a whole, yet its top is not carried beyond the equilibrium
-    let share = answered(of(with_surface_m3)).min(of(top.volume_m3).recip());
-    let heat_j = (sun_w + flux_w_m2 * area_m2) * seconds * share;
+    let first_j = (sun_w + flux_w_m2 * area_m2) * seconds;
     let held = top.volume_m3 * HEAT_J_M3_C;
+    // the mixed layer answers as a whole; yet where its top stays on top, that is not carried beyond the equilibrium
+    let mut share = answered(of(mixed_m3));
+    let moved = Layer { temperature_c: top.temperature_c + first_j / held, ..*top };
+    if moved.density_kg_m3(grain) <= top.density_kg_m3(grain) {
+        share = share.min(of(top.volume_m3).recip());
+    }
+    let heat_j = first_j * share;
     // no ice: water at 0 C gives no more heat
     let warmed_c = (top.temperature_c + heat_j / held).max(top.temperature_c.min(0.0));
     through.heat_j += held * (warmed_c - top.temperature_c);
@@ -122,14 +121,4 @@ fn lit(layers: &mut [Layer], site: &Site, edges_m: &[f64], solar_w_m2: f64, seco
         sum += kept;
     }
     sum
-}
-
-/// Volume of the water that is no heavier than the surface layer's, or hardly, m3.
-fn with_surface_m3(layers: &[Layer], grain_kg_m3: f64) -> f64 {
-    let Some(top) = layers.last() else {
-        return 0.0;
-    };
-    let most = top.density_kg_m3(grain_kg_m3) + WITH_SURFACE_KG_M3;
-    let with = layers.iter().rev().take_while(|l| l.density_kg_m3(grain_kg_m3) <= most);
-    with.map(|l| l.volume_m3).sum()
 }

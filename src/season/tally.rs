@@ -3,6 +3,7 @@
 //! Methods: `docs/methods.md`, section 8.
 
 use std::cmp::Ordering;
+use std::collections::BTreeSet;
 
 use chrono::NaiveDate;
 
@@ -30,10 +31,31 @@ pub struct TargetTally {
 }
 
 impl TargetTally {
-    /// Days on which it is outside by its temperature, or by its oxygen where that is more.
+    /// The days on which it is outside, by its temperature or by its oxygen.
+    pub fn outside(&self) -> BTreeSet<NaiveDate> {
+        let days = self.temperature_days.iter().chain(&self.oxygen_days);
+        days.filter(|(_, mark)| mark.outside()).map(|(date, _)| *date).collect()
+    }
+
+    /// Number of those days.
     pub fn days_outside(&self) -> u32 {
-        let days = |t: &Option<Tally>| t.as_ref().map_or(0, |t| t.over + t.under);
-        days(&self.temperature).max(days(&self.oxygen))
+        u32::try_from(self.outside().len()).unwrap_or(u32::MAX)
+    }
+
+    /// Number of those days after a date.
+    pub fn days_outside_after(&self, date: NaiveDate) -> u32 {
+        u32::try_from(self.outside().into_iter().filter(|day| *day > date).count()).unwrap_or(u32::MAX)
+    }
+
+    /// Most of those days in a row.
+    pub fn longest_run(&self) -> u32 {
+        let (mut longest, mut run, mut last) = (0, 0, None);
+        for day in self.outside() {
+            run = if last.is_some() && last == day.pred_opt() { run + 1 } else { 1 };
+            longest = longest.max(run);
+            last = Some(day);
+        }
+        longest
     }
 }
 

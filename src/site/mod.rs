@@ -10,6 +10,7 @@ mod outlet;
 mod pool;
 mod raw;
 mod raw_river;
+mod raw_season;
 mod river;
 mod season;
 mod travel;
@@ -31,6 +32,7 @@ pub use raw::{
     RawTarget, RawUndrawn, RawWell,
 };
 pub use raw_river::{RawAfterbay, RawInflow, RawMonthly, RawPoint, RawReach, RawRiver, RawSeepage};
+pub use raw_season::{RawCase, RawReserve, RawSeason, RawStages};
 pub use river::{Afterbay, Decay, Inflow, Point, Reach, River, Seepage, Surface, Yearly};
 pub use season::{Case, Knobs, Reserve, SeasonInputs, Stages, Strategy};
 pub use travel::{BULK_PER_WATER, MOST_TRAVEL_H, ROUGHNESS, hours_at};

@@ -5,7 +5,7 @@ use crate::units::Folder;
 
 use super::{
     BandInputs, Bins, Block, CastChecks, Chemistry, Crew, GenerationLost, Leakage, ListedCast, Opens,
-    Position, RawRiver, RawRow, SeasonInputs, WidthSource,
+    Position, RawRiver, RawRow, RawSeason, WidthSource,
 };
 
 /// Pool as read.
@@ -336,7 +336,7 @@ pub struct Raw {
     /// Listed casts.
     pub casts: Vec<ListedCast>,
     /// How the season ahead is looked at.
-    pub season: SeasonInputs,
+    pub season: RawSeason,
     /// Invented data.
     pub demonstration: bool,
 }

@@ -119,8 +119,10 @@ pub struct SeasonInputs {
     pub evaporates: bool,
     /// Oxygen transfer through the surface, m/day.
     pub transfer_m_day: f64,
-    /// Mean weather over the pool by month, where the weather file does not tell.
+    /// Mean weather over the pool by month, where the weather file does not tell: its own, else that of the river.
     pub monthly: Option<Box<[Air; 12]>>,
+    /// File of the weather over the pool, where the river names none.
+    pub weather: Option<String>,
     /// Daily weather of several years.
     pub years: Option<String>,
     /// Cases; the middle one of them is the one spoken of.
@@ -149,6 +151,7 @@ impl Default for SeasonInputs {
             evaporates: true,
             transfer_m_day: 0.5,
             monthly: None,
+            weather: None,
             years: None,
             // choice: two degrees of the air either way, and half as much in the inflow
             cases: vec![case("warm", 2.0, 1.0), case("middling", 0.0, 0.0), case("cool", -2.0, -1.0)],

@@ -5,12 +5,13 @@ use std::fs;
 
 use gatemix::files::cast::Column;
 use gatemix::files::folder::{Folder, check};
+use gatemix::files::plan;
 use gatemix::files::site::site;
 use gatemix::files::station;
 use gatemix::files::text::{Format, read_from};
 use gatemix::files::weather;
 use gatemix::files::yaml::{Document, Node};
-use gatemix::problem::any_refused;
+use gatemix::problem::{Weight, any_refused};
 use serde_yaml::Value;
 
 use super::said;
@@ -84,7 +85,7 @@ fn folder_of(site: &str, casts: &[(String, String)]) -> tempfile::TempDir {
 fn scenario_every_example_of_the_files_reference_is_accepted() {
     let mut folders: Vec<(String, Vec<(String, String)>)> = Vec::new();
     let mut records = Vec::new();
-    let mut sides: Vec<(usize, &str, String)> = Vec::new();
+    let mut sides: Vec<(usize, String, String)> = Vec::new();
     for (words, text) in fences() {
         match words.split(' ').collect::<Vec<_>>()[..] {
             ["yaml", "site"] => folders.push((text, Vec::new())),
@@ -92,7 +93,9 @@ fn scenario_every_example_of_the_files_reference_is_accepted() {
             ["csv", "cast", name] => folders.last_mut().unwrap().1.push((name.into(), text)),
             ["csv", "record", _] => records.push(text),
             // a file beside the casts, of the site above it
-            ["csv", "side", name] => sides.push((folders.len() - 1, name, text)),
+            ["csv", "side", name] => sides.push((folders.len() - 1, name.to_owned(), text)),
+            // plans and schedules have a test of their own below
+            ["csv", "plan" | "schedule", _] => {}
             // weather has a test of its own below
             ["csv", "weather"] | ["text"] => {}
             _ => panic!("unknown kind of example: {words}"),
@@ -266,6 +269,10 @@ river:
   monthly: { air: 12, dew_point: 8, wind: 2, radiation_w_m2: 200 }
   afterbay: { volume: 1000, area: 100 }
   reaches: [ { name: R, length_km: 5, width: 20, depth: 1, slope: 0.001, inflows: [ { name: S, at_km: 2, flow: 1, temperature: 9 } ] } ]
+season:
+  monthly: { air: 12, dew_point: 8, wind: 2, radiation_w_m2: 200 }
+  cases: [ { name: c } ]
+  stages: [ { name: s, from: 10-01, at: { hatch: 400 } } ]
 ";
 
 #[test]
@@ -296,4 +303,45 @@ fn law_the_files_reference_names_every_column_of_a_record_and_shows_it() {
     for word in columns.into_iter().chain(["# data: ", "# daylight: "]) {
         assert!(records.contains(word), "{word} stands in no example");
     }
+}
+
+#[test]
+fn law_the_files_reference_names_every_column_of_a_plan_and_its_examples_are_read() {
+    let told: Vec<&str> = rows("plan column").iter().map(|cells| cells[0]).collect();
+    let columns: Vec<&str> = plan::Column::ALL.iter().map(|column| column.name()).collect();
+    assert_eq!(told, columns);
+    let long = site_examples().into_iter().find(|text| text.contains("Long Dam")).unwrap();
+    let folder = folder_of(&long, &[]);
+    let (mut shown, mut is_long) = (String::new(), false);
+    for (words, text) in fences() {
+        let (below, name) = match words.split(' ').collect::<Vec<_>>()[..] {
+            ["yaml", "site"] => {
+                is_long = text == long;
+                continue;
+            }
+            ["csv", "plan", name] => ("plans", name),
+            ["csv", "schedule", name] => ("schedules", name),
+            ["csv", "side", name] if is_long => ("", name),
+            _ => continue,
+        };
+        let below = folder.path().join(below);
+        fs::create_dir_all(&below).unwrap();
+        fs::write(below.join(name), &text).unwrap();
+        shown += &text;
+    }
+    let folder = Folder::open(folder.path().to_str().unwrap()).unwrap();
+    assert!(folder.plans().len() >= 3);
+    for listed in folder.plans() {
+        assert!(listed.plan.is_some(), "{:#?}", said(&listed.problems));
+        assert!(!listed.problems.iter().any(|p| p.weight != Weight::Note), "{:#?}", said(&listed.problems));
+    }
+    for word in
+        columns.into_iter().chain(rows("plan line").iter().map(|cells| cells[0].split(':').next().unwrap()))
+    {
+        assert!(shown.contains(word), "{word} stands in no example");
+    }
+    let schedule = folder.schedule("two-steps").unwrap();
+    assert_eq!(schedule.schedule.unwrap().changes.len(), 2, "{:#?}", said(&schedule.problems));
+    assert!(folder.years().unwrap().weather.is_some());
+    assert_eq!(folder.conditions().weather.days.len(), 2);
 }

@@ -7,7 +7,7 @@ use std::path::Path;
 use gatemix::files::site::site;
 use gatemix::problem::Weight;
 
-use super::{aeration, limits, river, targets};
+use super::{aeration, limits, river, season, targets};
 
 pub(super) const SOUND: &str = r#"name: Test Dam (invented)
 units: { length: m, area: m2, volume: m3, flow: m3/s, temperature: C }
@@ -276,8 +276,13 @@ fn law_every_kind_of_problem_a_site_can_have_has_a_case() {
         gather(&Path::new(env!("CARGO_MANIFEST_DIR")).join(folder), &mut kinds);
     }
     let flagged = FLAGGED.iter().chain(aeration::FLAGGED).chain(river::FLAGGED).chain(river::FLAGGED_MONTHLY);
-    let cases: BTreeSet<&str> =
-        all().chain(river::REFUSED).chain(river::REFUSED_MONTHLY).chain(flagged).map(|c| c.2).collect();
+    let cases: BTreeSet<&str> = all()
+        .chain(season::REFUSED)
+        .chain(river::REFUSED)
+        .chain(river::REFUSED_MONTHLY)
+        .chain(flagged)
+        .map(|c| c.2)
+        .collect();
     // shown by the two tests above
     let elsewhere = [
         "damp",

@@ -18,6 +18,7 @@ mod rank_answers;
 mod records;
 mod refused;
 mod river;
+mod season;
 mod since;
 mod sorrel;
 mod stories;

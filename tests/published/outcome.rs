@@ -6,7 +6,8 @@ use std::sync::Arc;
 use approx::assert_abs_diff_eq;
 use chrono::{Days, NaiveDate};
 use gatemix::files::site::site;
-use gatemix::mix::{Asked, Blend, Gate, Setting};
+use gatemix::mix::limits::Move;
+use gatemix::mix::{Asked, Blend, Gate};
 use gatemix::profile::{self, Profile};
 use gatemix::river::{Conditions, Figures};
 use gatemix::season::{
@@ -102,19 +103,16 @@ fn decision(number: u64, attainable_c: Option<[f64; 2]>) -> Decision {
         why: if number == 0 { Why::Begin } else { Why::Due },
         asked: Asked::default(),
         moves: 0,
+        moved: Vec::new(),
         crew_hours: 0.0,
+        lead_days: 0.0,
         attainable_c,
+        past: Vec::new(),
     }
 }
 
 /// A season of days and decisions, and what comes of it at a site with the outages of a plan.
-fn of(
-    site: &Site,
-    days: Vec<SeasonDay>,
-    decisions: Vec<Decision>,
-    outages: Vec<Outage>,
-    now: Option<&Setting>,
-) -> Outcome {
+fn of(site: &Site, days: Vec<SeasonDay>, decisions: Vec<Decision>, outages: Vec<Outage>) -> Outcome {
     let start = cast(site);
     let plan = Plan { name: "p".into(), file: "p.csv".into(), days: Vec::new(), outages, notes: Vec::new() };
     let case = Case { name: "c".into(), air_c: 0.0, wind: 1.0, inflow: 1.0, inflow_c: 0.0 };
@@ -130,7 +128,7 @@ fn of(
         start: &start,
         begins: begin(),
         decides: begin(),
-        now,
+        now: None,
         plan: &plan,
         skies: &skies,
         choosing: Choosing::By(Strategy::Best),
@@ -177,14 +175,14 @@ fn days(count: u64) -> Vec<SeasonDay> {
 #[test]
 fn scenario_cold_water_is_what_the_deepest_usable_outlet_can_draw() {
     let site = checked(SITE);
-    let out = of(&site, days(3), Vec::new(), Vec::new(), None);
+    let out = of(&site, days(3), Vec::new(), Vec::new());
     // the low outlet reaches the bed: nothing stops its zone in water of one temperature
     let cold = &out.cold[0].days[0];
     assert_abs_diff_eq!(cold.total_m3, 1e7, epsilon = 1e-3);
     assert_abs_diff_eq!(cold.usable_m3.unwrap(), 1e7, epsilon = 1e-3);
     // with it out of use the middle one at 20 m cannot come down through the step of 14 C
     let outage = Outage { outlet: 2, from: begin(), to: Some(begin()), reason: "r".into() };
-    let out = of(&site, days(2), Vec::new(), vec![outage], None);
+    let out = of(&site, days(2), Vec::new(), vec![outage]);
     let [first, second] = [0, 1].map(|i| out.cold[0].days[i].usable_m3.unwrap());
     assert!(first < 0.2e7, "{first}");
     assert_abs_diff_eq!(second, 1e7, epsilon = 1e-3);
@@ -212,11 +210,11 @@ fn scenario_a_reserve_counts_from_its_day_on() {
     for i in [1, 4, 5] {
         season[i].layers = layers(8.0, 55.0);
     }
-    let out = of(&site, season, Vec::new(), Vec::new(), None);
+    let out = of(&site, season, Vec::new(), Vec::new());
     assert_eq!(out.under_reserve, Some(Exhausted::On(date("2026-08-05"))));
-    let kept = of(&site, days(6), Vec::new(), Vec::new(), None);
+    let kept = of(&site, days(6), Vec::new(), Vec::new());
     assert_eq!(kept.under_reserve, Some(Exhausted::NotBy(date("2026-08-06"))));
-    assert_eq!(of(&checked(SITE), days(2), Vec::new(), Vec::new(), None).under_reserve, None);
+    assert_eq!(of(&checked(SITE), days(2), Vec::new(), Vec::new()).under_reserve, None);
 }
 
 #[test]
@@ -225,7 +223,7 @@ fn scenario_it_runs_out_where_no_mix_comes_down_to_the_high_up_to_the_end_of_the
     let on = |coldest: [f64; 5]| {
         let decisions =
             coldest.iter().enumerate().map(|(i, c)| decision(7 * i as u64, Some([*c, 20.0]))).collect();
-        of(&site, days(30), decisions, Vec::new(), None).exhausted
+        of(&site, days(30), decisions, Vec::new()).exhausted
     };
     // 1, 8 and 15 August are the summer rule's (high 12), 22 and 29 the autumn rule's (high 10)
     assert_eq!(on([8.0, 8.0, 8.0, 8.0, 8.0]), Exhausted::NotBy(date("2026-08-30")));
@@ -233,10 +231,10 @@ fn scenario_it_runs_out_where_no_mix_comes_down_to_the_high_up_to_the_end_of_the
     assert_eq!(on([8.0, 8.0, 8.0, 11.0, 10.0]), Exhausted::NotBy(date("2026-08-30")), "it came back");
     assert_eq!(on([12.5, 12.5, 12.5, 9.0, 9.0]), Exhausted::On(date("2026-08-01")), "to the end of its rule");
     assert_eq!(on([12.5, 12.5, 11.0, 9.0, 9.0]), Exhausted::NotBy(date("2026-08-30")));
-    let out = of(&site, days(3), vec![decision(0, Some([13.0, 20.0]))], Vec::new(), None);
+    let out = of(&site, days(3), vec![decision(0, Some([13.0, 20.0]))], Vec::new());
     assert_eq!(out.reached[0].range_c(), (Some(8.0), Some(12.0)), "a wish bounds nothing");
     assert_abs_diff_eq!(out.reached[0].by_c().unwrap(), 1.0, epsilon = 1e-12);
-    assert!(matches!(of(&site, days(3), Vec::new(), Vec::new(), None).exhausted, Exhausted::Unknown(_)));
+    assert!(matches!(of(&site, days(3), Vec::new(), Vec::new()).exhausted, Exhausted::Unknown(_)));
 }
 
 #[test]
@@ -249,7 +247,7 @@ fn scenario_gates_are_lost_by_a_falling_pool_and_come_with_a_rising_one() {
         day.layers = layers(10.0, pool_m);
     }
     season[1].gates.push(Gate { outlet: 0, opening: 1.0, flow_m3s: 5.0 });
-    let out = of(&site, season, Vec::new(), Vec::new(), None);
+    let out = of(&site, season, Vec::new(), Vec::new());
     let of_high: Vec<_> = out.gates.iter().filter(|g| g.outlet == 0).collect();
     assert_eq!(of_high.len(), 2);
     assert_eq!((of_high[0].first_day, of_high[0].last_day), (Some(begin()), Some(date("2026-08-02"))));
@@ -259,7 +257,7 @@ fn scenario_gates_are_lost_by_a_falling_pool_and_come_with_a_rising_one() {
     assert_eq!(out.gates.iter().filter(|g| g.outlet == 1).count(), 1);
     // one that is out all season has no day, and says why
     let outage = Outage { outlet: 2, from: begin(), to: None, reason: "hoist".into() };
-    let out = of(&site, days(3), Vec::new(), vec![outage], None);
+    let out = of(&site, days(3), Vec::new(), vec![outage]);
     let low = out.gates.iter().find(|g| g.outlet == 2).unwrap();
     assert_eq!((low.first_day, low.reason.as_ref().unwrap().0), (None, "outage"));
     assert!(low.reason.as_ref().unwrap().1.contains("hoist"));
@@ -268,17 +266,42 @@ fn scenario_gates_are_lost_by_a_falling_pool_and_come_with_a_rising_one() {
 #[test]
 fn scenario_what_moves_is_told_with_the_day_its_crew_must_know() {
     let site = checked(SITE);
-    let mut season = days(10);
-    for day in &mut season[7..] {
-        day.gates = vec![Gate { outlet: 2, opening: 1.0, flow_m3s: 20.0 }];
-    }
-    let now = Setting::of(season[0].gates.clone());
-    let decisions = vec![decision(0, None), Decision { moves: 2, crew_hours: 3.0, ..decision(7, None) }];
-    let out = of(&site, season, decisions, Vec::new(), Some(&now));
+    let moved = |outlet: usize, to_m3s: f64| Move { outlet, from: 1.0, to: 1.0, from_m3s: 5.0, to_m3s };
+    let change = Decision {
+        moves: 2,
+        moved: vec![moved(1, 0.0), moved(2, 20.0)],
+        crew_hours: 3.0,
+        lead_days: 2.5,
+        ..decision(7, None)
+    };
+    let out = of(&site, days(10), vec![decision(0, None), change], Vec::new());
     assert_eq!((out.moves, out.calendar.len()), (2, 1), "the first decision leaves everything as it is");
     let on = &out.calendar[0];
     assert_eq!((on.date, on.crew_hours, on.moved.len()), (date("2026-08-08"), 3.0, 2));
     assert_eq!(on.book_by, Some(date("2026-08-05")), "a part of a day counts as one");
+}
+
+/// Days on which the summer rule is outside by its temperature, those by its oxygen, and what was left.
+#[test]
+fn scenario_a_day_outside_by_warmth_and_oxygen_counts_once() {
+    let site = checked(&SITE.replace("low: 8, high: 12", "low: 8, high: 12, oxygen_min: 7"));
+    let mut season: Vec<SeasonDay> = (0..40).map(day).collect();
+    for (i, warm, poor) in [(2, true, true), (3, false, true), (5, true, false), (35, true, false)] {
+        if warm {
+            season[i].release.temperature_c = 13.0;
+        }
+        if poor {
+            season[i].release.oxygen_below_mg_l = Some(6.0);
+        }
+    }
+    let out = of(&site, season, Vec::new(), Vec::new());
+    let summer = &out.targets[0];
+    assert_eq!((summer.days_outside(), summer.longest_run()), (3, 2));
+    assert_eq!(summer.days_outside_after(date("2026-08-04")), 1);
+    // on 1 August and 1 September: the autumn rule's only day is 5 September
+    let left: Vec<(NaiveDate, u32)> = out.left.iter().map(|l| (l.date, l.days_outside)).collect();
+    assert_eq!(left, [(date("2026-08-01"), 4), (date("2026-09-01"), 1)]);
+    assert_eq!((out.score.days_outside, out.score.worst_c), (4, 3.0));
 }
 
 #[test]
@@ -295,7 +318,7 @@ fn scenario_degree_days_reach_their_stages() {
     site.season.stages =
         vec![stages("dam", since(8, 2)), stages("Ford", since(8, 2)), stages("dam", since(10, 1))];
     // 5 degree-days a day from 2 August on: 15 on the third of them
-    let out = of(&site, days(6), Vec::new(), Vec::new(), None);
+    let out = of(&site, days(6), Vec::new(), Vec::new());
     let on: Vec<&Exhausted> = out.stages.iter().map(|s| &s.on).collect();
     assert_eq!(on[0], &Exhausted::On(date("2026-08-04")));
     assert_eq!(on[1], &Exhausted::NotBy(date("2026-08-06")));
@@ -324,7 +347,7 @@ fn scenario_what_to_beware_of() {
     for (day, flow) in season.iter_mut().zip([50.0, 50.0, 30.0, 40.0, 40.0]) {
         day.points = Some(vec![figures(flow)]);
     }
-    let out = of(&site, season, Vec::new(), Vec::new(), None);
+    let out = of(&site, season, Vec::new(), Vec::new());
     let told: Vec<(&str, NaiveDate)> = out.warnings.iter().map(|w| (w.kind, w.date)).collect();
     assert_eq!(told, [("deep-water", date("2026-08-03")), ("max_drawdown_per_day", date("2026-08-05"))]);
     assert!(out.warnings[0].words.starts_with("20 % of the release"));
@@ -342,5 +365,5 @@ fn scenario_what_to_beware_of() {
     for day in &mut all {
         day.release.oxygen_low_share = 0.2;
     }
-    assert!(of(&site, all, Vec::new(), Vec::new(), None).warnings.is_empty());
+    assert!(of(&site, all, Vec::new(), Vec::new()).warnings.is_empty());
 }

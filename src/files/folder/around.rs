@@ -9,7 +9,7 @@ use crate::files::weather::weather;
 use crate::files::yaml::{Document, Node};
 use crate::problem::{Problem, Weight, any_refused};
 use crate::river::Conditions;
-use crate::site::{River, Surface};
+use crate::site::{River, Site, Surface};
 use crate::target::DAM;
 
 use super::{Folder, Root, inside};
@@ -60,7 +60,7 @@ impl Folder {
         let mut out = Around::default();
         let mut conditions = Conditions::default();
         let document = Document::parse(&self.source.text).ok();
-        for wanted in wanted(self.site.river.as_ref(), document.as_ref().map(Document::root)) {
+        for wanted in wanted(&self.site, document.as_ref().map(Document::root)) {
             let Some(source) = self.beside(&wanted.name) else {
                 if let Some(path) = wanted.path {
                     out.missing(&wanted.name, path);
@@ -154,9 +154,28 @@ pub(super) fn stays_within(name: &str) -> bool {
 }
 
 /// The files that a site is told by, in the order in which they are read.
-fn wanted(river: Option<&River>, document: Option<&Node>) -> Vec<Wanted> {
+fn wanted(site: &Site, document: Option<&Node>) -> Vec<Wanted> {
     let mut out = vec![Wanted { name: TAILWATER.to_owned(), path: None, of: Of::Station(DAM.to_owned()) }];
-    let Some(river) = river else { return out };
+    if let Some(river) = &site.river {
+        out.extend(along(river, document));
+    }
+    let weather = |name: &String, path: &str| Wanted {
+        name: name.clone(),
+        path: Some(path.to_owned()),
+        of: Of::Weather,
+    };
+    // a folder has one weather: that of the river, else that of the pool
+    match (site.river.as_ref().and_then(|river| river.surface.as_ref()), &site.season.weather) {
+        (Some(Surface::File(name)), _) => out.push(weather(name, "river.weather")),
+        (_, Some(name)) => out.push(weather(name, "season.weather")),
+        _ => {}
+    }
+    out
+}
+
+/// The records of the points and streams of a river.
+fn along(river: &River, document: Option<&Node>) -> Vec<Wanted> {
+    let mut out = Vec::new();
     for (i, point) in river.points.iter().enumerate() {
         let i = document.and_then(|root| place_of(root, &point.name)).unwrap_or(i);
         out.extend(point.observed.iter().map(|name| Wanted {
@@ -173,9 +192,6 @@ fn wanted(river: Option<&River>, document: Option<&Node>) -> Vec<Wanted> {
                 of: Of::Stream(inflow.name.clone()),
             }));
         }
-    }
-    if let Some(Surface::File(name)) = &river.surface {
-        out.push(Wanted { name: name.clone(), path: Some("river.weather".into()), of: Of::Weather });
     }
     out
 }

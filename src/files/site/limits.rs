@@ -92,7 +92,7 @@ fn share(read: &In, map: &Map, key: &'static str) -> Option<f64> {
     read.optional(map, key, Dimension::Percent).map(|percent| percent / 100.0)
 }
 
-fn required_text(map: &Map, key: &'static str) -> Option<String> {
+pub(super) fn required_text(map: &Map, key: &'static str) -> Option<String> {
     map.required(key).and_then(|v| v.text().map(str::to_owned))
 }
 

@@ -3,6 +3,7 @@
 mod limits;
 mod outlets;
 mod river;
+mod season;
 mod targets;
 
 use chrono::{Offset, Utc};
@@ -191,6 +192,7 @@ fn raw_site(map: Map) -> Raw {
         taken: m.optional("taken").and_then(|v| taken(&v)),
         pool_m: read.optional(m, "pool", Dimension::Length),
     });
+    within(&map, "season", |m| raw.season = season::season(&read, m));
     raw.demonstration = map.optional("demonstration").and_then(|v| v.boolean()).unwrap_or(false);
     map.finish();
     raw

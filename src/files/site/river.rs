@@ -46,7 +46,7 @@ fn described(read: &In, map: &Map) -> RawRiver {
     out
 }
 
-fn monthly(read: &In, map: &Map) -> RawMonthly {
+pub(super) fn monthly(read: &In, map: &Map) -> RawMonthly {
     RawMonthly {
         air_c: months(map, "air", |v| read.quantity(v, Dimension::Temperature)),
         humidity: shares(read, map, "humidity"),
@@ -145,7 +145,7 @@ fn hours(read: &In, map: &Map, key: &'static str) -> Vec<(f64, f64)> {
 }
 
 /// Percent as a share of 1.
-fn share(read: &In, map: &Map, key: &'static str) -> Option<f64> {
+pub(super) fn share(read: &In, map: &Map, key: &'static str) -> Option<f64> {
     read.optional(map, key, Dimension::Percent).map(|percent| percent / 100.0)
 }
 

@@ -57,7 +57,7 @@ pub(super) fn target(read: &In, map: &Map) -> RawTarget {
 }
 
 /// A sum of degrees in the folder's degrees, C days.
-fn degree_days(read: &In, value: &Value) -> Option<f64> {
+pub(super) fn degree_days(read: &In, value: &Value) -> Option<f64> {
     let c_days = match value.scalar()? {
         Scalar::Number(number) => read.units.to_si(number, Dimension::TemperatureDifference),
         Scalar::Text(text) => match read.units.parse(text, Dimension::TemperatureDifference) {

@@ -160,9 +160,8 @@ fn gate(site: &Site, life: &GateLife) -> GateJson {
 fn targets(site: &Site, of: &SeasonRun) -> Vec<TargetJson> {
     let one = |told: &TargetTally| {
         let rule = site.targets.get(told.target)?;
-        let range = told.temperature.clone().unwrap_or_default();
-        let main =
-            if told.temperature.is_some() { range.clone() } else { told.oxygen.clone().unwrap_or_default() };
+        let range = told.temperature.unwrap_or_default();
+        let main = if told.temperature.is_some() { range } else { told.oxygen.unwrap_or_default() };
         let degrees = rule.is_of_temperature() && !rule.statistic.counts_days();
         Some(TargetJson {
             name: rule.name.clone(),
@@ -170,7 +169,7 @@ fn targets(site: &Site, of: &SeasonRun) -> Vec<TargetJson> {
             case: of.run.case.clone(),
             days_outside: told.days_outside(),
             degree_days_outside: told.temperature.as_ref().filter(|_| degrees).map(|t| t.sum_outside),
-            longest_run: main.longest_run,
+            longest_run: told.longest_run(),
             days: main.judged,
             days_unknown: main.unknown,
             days_above: range.over,

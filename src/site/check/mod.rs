@@ -8,6 +8,7 @@ mod outlets;
 mod reaches;
 mod river;
 mod rules;
+mod season;
 mod spread;
 mod statistic;
 
@@ -71,6 +72,7 @@ impl Site {
         }
         let (now, now_wells) = operation::now(raw, &outlets, &mut problems);
         spread::spread(raw, &mut problems);
+        let season = season::season(raw, &mut problems);
         coverage(raw, &mut problems);
         if any_refused(&problems) {
             return (None, problems);
@@ -104,7 +106,7 @@ impl Site {
                 band: raw.band,
                 columns: raw.columns.clone(),
                 casts: raw.casts.clone(),
-                season: raw.season.clone(),
+                season,
                 demonstration: raw.demonstration,
             })
         })();

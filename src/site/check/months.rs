@@ -1,4 +1,4 @@
-//! Weather of the months, as the site file gives it, into the air over the river.
+//! Weather of the months, as the site file gives it, into the air over the water.
 
 use chrono::{Datelike, NaiveDate};
 
@@ -10,9 +10,9 @@ use crate::weather::{Air, CLOUD_UNKNOWN, Damp, Reading, STATION_HEIGHT_M, Sky, S
 
 use super::outlets::{not_negative, positive};
 
-/// The air of each month, January first, as that of its middle day.
-pub(super) fn air(m: &RawMonthly, raw: &Raw, problems: &mut Vec<Problem>) -> Option<[Air; 12]> {
-    let at = |key: &str| format!("river.monthly.{key}");
+/// The air of each month, January first, as that of its middle day; `path` is where the file gives it.
+pub(super) fn air(m: &RawMonthly, raw: &Raw, path: &str, problems: &mut Vec<Problem>) -> Option<[Air; 12]> {
+    let at = |key: &str| format!("{path}.{key}");
     let before = problems.len();
     let damp = match (&m.humidity, &m.dew_point_c) {
         (Some(_), None) | (None, Some(_)) => true,
@@ -22,7 +22,7 @@ pub(super) fn air(m: &RawMonthly, raw: &Raw, problems: &mut Vec<Problem>) -> Opt
             } else {
                 "neither humidity nor dew_point is given"
             };
-            problems.push(Problem::refused("damp", words, "give one of both").at("river.monthly"));
+            problems.push(Problem::refused("damp", words, "give one of both").at(path));
             false
         }
     };
@@ -86,7 +86,7 @@ pub(super) fn air(m: &RawMonthly, raw: &Raw, problems: &mut Vec<Problem>) -> Opt
                 out.push(air);
             }
             Err(problem) => {
-                problems.push(problem.at("river.monthly"));
+                problems.push(problem.at(path));
                 return None;
             }
         }
@@ -94,7 +94,7 @@ pub(super) fn air(m: &RawMonthly, raw: &Raw, problems: &mut Vec<Problem>) -> Opt
     if assumed {
         let words = format!("no cloud is given, nor what tells it: {CLOUD_UNKNOWN} is assumed");
         let cure = "give cloud, or `place: { latitude: 44.1 }`";
-        problems.push(Problem::flag("cloud-assumed", words, cure).at("river.monthly"));
+        problems.push(Problem::flag("cloud-assumed", words, cure).at(path));
     }
     if above {
         let words = format!("a dew point lies over {} above its air", say::dc(DEW_ABOVE_C, 0));

@@ -123,7 +123,7 @@ fn surface(raw: &Raw, river: &RawRiver, problems: &mut Vec<Problem>) -> Option<S
         let at = "river.exchange_w_m2_c".to_owned();
         positive(Some(0.0), at, "exchange_w_m2_c", problems);
     }
-    let months = river.monthly.as_ref().and_then(|m| super::months::air(m, raw, problems));
+    let months = river.monthly.as_ref().and_then(|m| super::months::air(m, raw, "river.monthly", problems));
     let all = [river.weather.is_some(), river.monthly.is_some(), given.is_some()];
     if all.iter().filter(|is| **is).count() > 1 {
         let used = if river.weather.is_some() { "the weather file" } else { "the monthly weather" };

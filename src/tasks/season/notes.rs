@@ -44,5 +44,5 @@ fn cases(cases: &[Case]) -> String {
             format!("{} ({shifts})", case.name)
         }
     };
-    format!("cases: {}", cases.iter().map(shifts).collect::<Vec<_>>().join("; "))
+    cases.iter().map(shifts).collect::<Vec<_>>().join("; ")
 }

@@ -2,7 +2,9 @@
 
 mod balance;
 mod drawdown;
+mod learn;
 mod still;
+mod surface;
 
 use chrono::NaiveDate;
 use gatemix::mix::Level;

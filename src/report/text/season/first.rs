@@ -61,7 +61,7 @@ pub fn out_of_reach(answer: &SeasonAnswer) -> Option<String> {
             "in {} of {known} cases no mix reaches it from {last} on, in the first of them from {first} on",
             dates.len()
         ),
-        _ => format!("in none of {known} cases it runs out"),
+        _ => format!("it runs out in none of {known} cases"),
     })
 }
 
@@ -94,11 +94,10 @@ pub fn targets(context: &Context, run: &SeasonRun, system: System) -> Vec<String
         let floor =
             told.oxygen.as_ref().map(|t| format!("oxygen {}", tally(t, &|by| format!("{by:.1} mg/L"))));
         let words: Vec<String> = [range, floor].into_iter().flatten().collect();
-        let wish = if rule.soft { ", a wish" } else { "" };
         let place = harmless(&rule.point);
         let asks = rules::asks(rule, system);
         (!words.is_empty())
-            .then(|| format!("{} at {place}{wish} ({asks}): {}", harmless(&rule.name), words.join("; ")))
+            .then(|| format!("{} at {place} ({asks}): {}", harmless(&rule.name), words.join("; ")))
     };
     let told: Vec<String> = run.outcome.targets.iter().filter_map(of).collect();
     if told.is_empty() { vec!["no target is valid on a day of the season".to_owned()] } else { told }

@@ -1,0 +1,6 @@
+//! Strategies of a season: thrift against every way to set the gates, and against the best of each day.
+
+mod brute;
+mod many;
+mod strategies;
+mod tiny;
