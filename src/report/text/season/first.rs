@@ -32,15 +32,20 @@ pub(super) fn first(context: &Context, answer: &SeasonAnswer, system: System) ->
 
 /// When no allowed mix reaches a target any more.
 pub fn exhausted(outcome: &Outcome) -> String {
-    match &outcome.exhausted {
-        Exhausted::On(date) => format!(
-            "from {date} on no allowed mix comes down to the high of the target at the dam at the release of the day, to \
-             the end of the rule or the season (seen on days of decision)"
-        ),
-        Exhausted::NotBy(date) => format!(
-            "not by {date}: on the last day of decision of every target at the dam an allowed mix comes down to its high"
-        ),
-        Exhausted::Unknown(why) => format!("not known: {}", harmless(why)),
+    let what = "no allowed mix comes down to the high of the target at the dam at the release of the day";
+    match (&outcome.exhausted, outcome.exhausted_until) {
+        (Exhausted::On(date), None) => {
+            format!("from {date} on {what}, to the end (seen on days of decision)")
+        }
+        (Exhausted::On(date), Some(until)) => {
+            format!("from {date} on {what}, until {until} (seen on days of decision)")
+        }
+        (Exhausted::NotBy(date), _) => {
+            format!(
+                "not by {date}: on every day of decision an allowed mix comes down to the high of the target at the dam"
+            )
+        }
+        (Exhausted::Unknown(why), _) => format!("not known: {}", harmless(why)),
     }
 }
 
