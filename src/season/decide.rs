@@ -7,7 +7,7 @@ use chrono::NaiveDate;
 use crate::mix::limits::{self, Before, Check, Move, Moves};
 use crate::mix::{Asked, Day, Drawn, Setting, checks};
 use crate::profile::Profile;
-use crate::rank::{Criterion, Full, Order, Progress, Question, Ranked, Ranking, Stopped, rank};
+use crate::rank::{Criterion, Full, Order, Progress, Question, Ranked, Ranking, Stopped, rank_roughly};
 use crate::site::{Outlet, SAME_OPENING, Site};
 
 use super::refine::refined;
@@ -157,7 +157,7 @@ impl Choice<'_> {
     /// as they stand, or as wide as they go; where that allows no mix, in any of their positions.
     fn ranked(&self, progress: Progress) -> Result<(Ranking, bool), NoMix> {
         let ranked = |site: &Site| {
-            rank(&self.question(site), progress).map_err(|stopped| match stopped {
+            rank_roughly(&self.question(site), progress).map_err(|stopped| match stopped {
                 Stopped::Cancelled => NoMix::Cancelled,
                 Stopped::Refused(problem) => NoMix::Allowed(None, problem.words),
             })
