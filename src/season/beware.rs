@@ -81,11 +81,12 @@ pub(super) fn stage_falls(site: &Site, days: &[SeasonDay]) -> Vec<StageFall> {
     points.iter().enumerate().filter_map(of).collect()
 }
 
-/// The day on which the pool overturns: the first that ends mixed from surface to bed after one that was layered.
+/// The day on which the pool turns over: the first after a layered one that mixes it from surface to bed, or at whose
+/// end both differ by no more than makes layers.
 pub(super) fn turnover(run: &Run) -> Option<NaiveDate> {
     let mut layered = is_layered(&run.start);
     for day in &run.days {
-        if day.overturned && layered {
+        if layered && (day.overturned || !is_layered(&day.layers)) {
             return Some(day.date);
         }
         layered |= is_layered(&day.layers);

@@ -192,8 +192,10 @@ pub struct Outcome {
     pub reserves: Vec<(ColdWater, Exhausted)>,
     /// What was left on the first of every month.
     pub left: Vec<Left>,
-    /// First day from which no allowed mix reaches the high of the target at the required release.
+    /// First day of decision on which no allowed mix reaches the high of the target at the required release.
     pub exhausted: Exhausted,
+    /// First day of decision after it on which one does again.
+    pub exhausted_until: Option<NaiveDate>,
     /// First day under a reserve of the site; `None` where it has none.
     pub under_reserve: Option<Exhausted>,
     /// What is within reach on the days of decision.
@@ -246,15 +248,17 @@ pub fn outcome(setup: &Setup, run: &Run) -> Outcome {
         })
         .collect();
     let reached = reached::reached(setup, site, run);
+    let (exhausted, exhausted_until) = reached::exhausted(&reached, run);
     let targets = tallies(site, &setup.skies.conditions, days);
     let cold: Vec<ColdWater> = site.cold_water_c.iter().map(|&c| colder(c)).collect();
     let largest = |of: fn(&SeasonDay) -> f64| days.iter().map(of).fold(0.0, f64::max);
     Outcome {
         left: cold::left(site, cold.first(), &targets),
         cold,
-        under_reserve: first(reserves.iter().map(|r| &r.1)),
+        under_reserve: first(&reserves.iter().map(|r| &r.1).collect::<Vec<_>>()),
         reserves,
-        exhausted: reached::exhausted(site, &reached, run),
+        exhausted,
+        exhausted_until,
         reached,
         gates: gates::lives(site, days),
         calendar: gates::moves(site, run),
@@ -277,17 +281,17 @@ pub fn outcome(setup: &Setup, run: &Run) -> Outcome {
 }
 
 /// The site of a season: under the air of its case, with the outages of its plan.
-fn season_site(setup: &Setup) -> Site {
+pub(super) fn season_site(setup: &Setup) -> Site {
     let mut site = Site::clone(&setup.skies.site);
     site.limits.outages.extend(setup.plan.outages.iter().cloned());
     site
 }
 
 /// The first day of several; where none has one, the first that is not known, else the end.
-fn first<'a>(all: impl Iterator<Item = &'a Exhausted> + Clone) -> Option<Exhausted> {
-    let on = all.clone().filter_map(Exhausted::on).min().map(Exhausted::On);
-    let not_by = || all.clone().find(|e| matches!(e, Exhausted::NotBy(_))).cloned();
-    on.or_else(not_by).or_else(|| all.clone().next().cloned())
+fn first(all: &[&Exhausted]) -> Option<Exhausted> {
+    let on = all.iter().filter_map(|one| one.on()).min().map(Exhausted::On);
+    let not_by = || all.iter().find(|one| matches!(one, Exhausted::NotBy(_)));
+    on.or_else(|| not_by().or_else(|| all.first()).map(|one| Exhausted::clone(one)))
 }
 
 /// The least of the season; days of which it is not known are passed over.

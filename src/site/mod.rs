@@ -34,7 +34,7 @@ pub use raw::{
 pub use raw_river::{RawAfterbay, RawInflow, RawMonthly, RawPoint, RawReach, RawRiver, RawSeepage};
 pub use raw_season::{RawCase, RawReserve, RawSeason, RawStages};
 pub use river::{Afterbay, Decay, Inflow, Point, Reach, River, Seepage, Surface, Yearly};
-pub use season::{Case, Knobs, Reserve, SeasonInputs, Stages, Strategy, light_of_secchi_per_m};
+pub use season::{Case, Knobs, Reserve, SeasonInputs, Stages, Strategy};
 pub use travel::{BULK_PER_WATER, MOST_TRAVEL_H, ROUGHNESS, hours_at};
 
 /// Where the dam stands.

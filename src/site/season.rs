@@ -61,20 +61,6 @@ impl Default for Knobs {
     }
 }
 
-/// Extinction of light times the depth at which a white disk is lost from sight (recalled: Poole and Atkins 1929).
-const LIGHT_BY_SECCHI: f64 = 1.7;
-
-/// Extinction of light from the depth at which a white disk is lost from sight, per m.
-///
-/// # Units
-/// Depth m, result 1/m.
-///
-/// # References
-/// Poole and Atkins 1929 (recalled): Kd = 1.7 / depth.
-pub fn light_of_secchi_per_m(secchi_m: f64) -> f64 {
-    LIGHT_BY_SECCHI / secchi_m
-}
-
 /// A case of weather and inflow, made from what is given by stated shifts.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Case {

@@ -2,8 +2,9 @@
 
 use gatemix::files::site::site;
 use gatemix::problem::Weight;
-use gatemix::site::{SeasonInputs, Site, Strategy, light_of_secchi_per_m};
+use gatemix::site::{SeasonInputs, Site, Strategy};
 use gatemix::target::YearDay;
+use gatemix::water::extinction_per_m;
 
 use super::said;
 use super::site::Case;
@@ -46,7 +47,7 @@ pub(super) const REFUSED: &[Case] = &[
     ("secchi: 3.4", "secchi: 0", "season", "season.secchi", "lies outside"),
     ("secchi: 3.4", "secchi: 3.4\n  light_per_m: 0.5", "season", "season.secchi", "both tell the light"),
     ("secchi: 3.4", "light_per_m: 90", "season", "season.light_per_m", "lies outside 0.02 to 20 per m"),
-    ("wind_share: 15", "wind_share: 150", "season", "season.wind_share", "lies outside 0 to 100 %"),
+    ("wind_share: 15", "wind_share: 250", "season", "season.wind_share", "lies outside 0 to 200 %"),
     ("diffusion: 2", "diffusion: -1", "season", "season.diffusion", "lies outside 0 to 100"),
     (
         "water: 0.1",
@@ -117,7 +118,7 @@ fn scenario_what_is_wrong_with_a_season_is_said_at_its_key_and_nothing_else_is()
 fn scenario_a_sound_season_is_kept_and_what_is_left_out_is_as_usual() {
     let season = dam(DAM).season;
     assert_eq!((season.strategy, season.decide_days, season.layer_m), (Strategy::Thrift, 5, 1.5));
-    assert_eq!(season.knobs.light_per_m, light_of_secchi_per_m(3.4));
+    assert_eq!(season.knobs.light_per_m, extinction_per_m(3.4));
     assert!((season.knobs.light_per_m - 0.5).abs() < 1e-12);
     assert_eq!((season.knobs.wind, season.knobs.diffusion, season.inflow_takes_in), (0.15, 2.0, 0.3));
     assert_eq!((season.knobs.water_demand_mg_l_day, season.knobs.bed_demand_g_m2_day), (0.1, 0.8));

@@ -52,6 +52,7 @@ fn run(site: &Site, of: &SeasonRun) -> RunJson {
         days: (of.run.days.iter().enumerate()).map(|(i, d)| day(site, of, d, cold.first(), i)).collect(),
         gates: outcome.gates.iter().map(|g| gate(site, g)).collect(),
         exhausted_on: on(exhausted),
+        exhausted_until: outcome.exhausted_until.map(|date| date.to_string()),
         exhausted_unknown: unknown(exhausted),
         under_reserve_on: outcome.under_reserve.as_ref().and_then(on),
         targets: targets(site, of),
@@ -160,9 +161,8 @@ fn gate(site: &Site, life: &GateLife) -> GateJson {
 fn targets(site: &Site, of: &SeasonRun) -> Vec<TargetJson> {
     let one = |told: &TargetTally| {
         let rule = site.targets.get(told.target)?;
-        let range = told.temperature.clone().unwrap_or_default();
-        let main =
-            if told.temperature.is_some() { range.clone() } else { told.oxygen.clone().unwrap_or_default() };
+        let range = told.temperature.unwrap_or_default();
+        let main = if told.temperature.is_some() { range } else { told.oxygen.unwrap_or_default() };
         let degrees = rule.is_of_temperature() && !rule.statistic.counts_days();
         Some(TargetJson {
             name: rule.name.clone(),

@@ -5,10 +5,10 @@ use std::ops::RangeInclusive;
 use crate::problem::Problem;
 use crate::site::{
     Case, Knobs, Raw, RawCase, RawReserve, RawSeason, RawStages, Reserve, SeasonInputs, Stages, Strategy,
-    light_of_secchi_per_m,
 };
 use crate::target::{DAM, YearDay};
 use crate::units::say;
+use crate::water::extinction_per_m;
 
 use super::months;
 use super::outlets::positive;
@@ -21,6 +21,8 @@ const LAYER_M: RangeInclusive<f64> = 0.1..=10.0;
 const SECCHI_M: RangeInclusive<f64> = 0.1..=50.0;
 /// Extinction of light, per m (choice: that of pure water to that of mud).
 const LIGHT_PER_M: RangeInclusive<f64> = 0.02..=20.0;
+/// Share of the work of the wind (choice: none to beyond the 1.3 of the literature).
+const WIND_SHARE: RangeInclusive<f64> = 0.0..=2.0;
 /// Factor on the diffusion (choice: none to far beyond any published spread).
 const DIFFUSION: RangeInclusive<f64> = 0.0..=100.0;
 /// Oxygen taken by the water, mg/L per day (choice: none to that of sewage).
@@ -50,7 +52,7 @@ pub(super) fn season(raw: &Raw, problems: &mut Vec<Problem>) -> SeasonInputs {
             wind: r.wind.unwrap_or(usual.knobs.wind),
             light_per_m: r
                 .light_per_m
-                .or(r.secchi_m.map(light_of_secchi_per_m))
+                .or(r.secchi_m.map(extinction_per_m))
                 .unwrap_or(usual.knobs.light_per_m),
             diffusion: r.diffusion.unwrap_or(usual.knobs.diffusion),
             water_demand_mg_l_day: r.water_demand_mg_l_day.unwrap_or(usual.knobs.water_demand_mg_l_day),
@@ -97,7 +99,7 @@ fn ranges(r: &RawSeason, problems: &mut Vec<Problem>) {
         }
     }
     for (value, key, range) in
-        [(r.wind, "wind_share", 0.0..=1.0), (r.inflow_takes_in, "inflow_takes_in", TAKES_IN)]
+        [(r.wind, "wind_share", WIND_SHARE), (r.inflow_takes_in, "inflow_takes_in", TAKES_IN)]
     {
         if outside(value, &range) {
             let words = format!("{key} lies outside 0 to {:.0} %", 100.0 * range.end());

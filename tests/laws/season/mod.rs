@@ -2,6 +2,7 @@
 
 mod balance;
 mod drawdown;
+mod learn;
 mod still;
 mod surface;
 

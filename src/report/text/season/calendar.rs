@@ -11,9 +11,11 @@ use crate::units::{Dimension, System, figure, in_system};
 use super::super::gates::moved;
 use super::short;
 
-/// Columns of a name, and of a date.
+/// Columns of a name, and of a date in a table.
 const NAME: usize = 16;
-const DATE: usize = 12;
+const DATE: usize = 8;
+/// Columns of a range.
+const RANGE: usize = 16;
 
 /// When every gate can be used: first and last day, why not longer, whom to tell by when.
 pub fn gates(context: &Context, run: &SeasonRun, system: System) -> Vec<String> {
@@ -51,7 +53,8 @@ pub fn moves(context: &Context, answer: &SeasonAnswer, run: &SeasonRun, system: 
     out
 }
 
-fn moved_words(site: &Site, moves: &[Move], system: System) -> String {
+/// Which gates move, from where to where.
+pub fn moved_words(site: &Site, moves: &[Move], system: System) -> String {
     moved(site, moves, system).join(", ")
 }
 
@@ -69,7 +72,7 @@ pub fn reach(run: &SeasonRun, system: System) -> Vec<String> {
     let unit = system.unit(Dimension::Temperature);
     let c = |c: f64| figure(c, unit, 1);
     let mut out =
-        vec![format!("{:<DATE$}{:<18}asked at the dam", format!("in {}", unit.symbol()), "within reach")];
+        vec![format!("{:<DATE$}{:<RANGE$}asked at the dam", format!("in {}", unit.symbol()), "within reach")];
     out.extend(run.outcome.reached.iter().map(|on| {
         let within =
             on.attainable_c.map_or_else(|| "not known".to_owned(), |[a, b]| format!("{} to {}", c(a), c(b)));
@@ -79,7 +82,7 @@ pub fn reach(run: &SeasonRun, system: System) -> Vec<String> {
             (None, Some(high)) => format!("to {}", c(high)),
             (Some(low), Some(high)) => format!("{} to {}", c(low), c(high)),
         };
-        format!("{:<DATE$}{within:<18}{asked:<18}{}", short(on.date), missed(on, system))
+        format!("{:<DATE$}{within:<RANGE$}{asked:<RANGE$}{}", short(on.date), missed(on, system))
             .trim_end()
             .to_owned()
     }));

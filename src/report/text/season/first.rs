@@ -32,15 +32,20 @@ pub(super) fn first(context: &Context, answer: &SeasonAnswer, system: System) ->
 
 /// When no allowed mix reaches a target any more.
 pub fn exhausted(outcome: &Outcome) -> String {
-    match &outcome.exhausted {
-        Exhausted::On(date) => format!(
-            "from {date} on no allowed mix comes down to the high of the target at the dam at the release of the day, to \
-             the end of the rule or the season (seen on days of decision)"
-        ),
-        Exhausted::NotBy(date) => format!(
-            "not by {date}: on the last day of decision of every target at the dam an allowed mix comes down to its high"
-        ),
-        Exhausted::Unknown(why) => format!("not known: {}", harmless(why)),
+    let what = "no allowed mix comes down to the high of the target at the dam at the release of the day";
+    match (&outcome.exhausted, outcome.exhausted_until) {
+        (Exhausted::On(date), None) => {
+            format!("from {date} on {what}, to the end (seen on days of decision)")
+        }
+        (Exhausted::On(date), Some(until)) => {
+            format!("from {date} on {what}, until {until} (seen on days of decision)")
+        }
+        (Exhausted::NotBy(date), _) => {
+            format!(
+                "not by {date}: on every day of decision an allowed mix comes down to the high of the target at the dam"
+            )
+        }
+        (Exhausted::Unknown(why), _) => format!("not known: {}", harmless(why)),
     }
 }
 
@@ -94,11 +99,10 @@ pub fn targets(context: &Context, run: &SeasonRun, system: System) -> Vec<String
         let floor =
             told.oxygen.as_ref().map(|t| format!("oxygen {}", tally(t, &|by| format!("{by:.1} mg/L"))));
         let words: Vec<String> = [range, floor].into_iter().flatten().collect();
-        let wish = if rule.soft { ", a wish" } else { "" };
         let place = harmless(&rule.point);
         let asks = rules::asks(rule, system);
         (!words.is_empty())
-            .then(|| format!("{} at {place}{wish} ({asks}): {}", harmless(&rule.name), words.join("; ")))
+            .then(|| format!("{} at {place} ({asks}): {}", harmless(&rule.name), words.join("; ")))
     };
     let told: Vec<String> = run.outcome.targets.iter().filter_map(of).collect();
     if told.is_empty() { vec!["no target is valid on a day of the season".to_owned()] } else { told }
@@ -111,6 +115,15 @@ fn counted(rule: &Target, of: &Tally, system: System) -> String {
         let _ = write!(out, ", {} in all", amounts::degree_days(of.sum_outside, system));
     }
     out
+}
+
+/// How far outside a rule: of its oxygen floor, or in the unit of its range.
+pub fn outside_by(rule: &Target, by: f64, oxygen: bool, system: System) -> String {
+    match (oxygen, rule.oxygen_min_mg_l) {
+        (true, Some(_)) => format!("{by:.1} mg/L"),
+        (true, None) => format!("{:.0} % of saturation", 100.0 * by),
+        (false, _) => amounts::by(rule, by, system),
+    }
 }
 
 /// `34 days`.

@@ -4,6 +4,7 @@
 mod calendar;
 mod cold;
 mod first;
+pub(super) mod price;
 mod rest;
 mod side;
 
@@ -18,9 +19,10 @@ use crate::tasks::season::SeasonAnswer;
 
 use super::{labelled, list, wrapped};
 
-pub use calendar::{gates, moves, reach};
+pub use calendar::{gates, moved_words, moves, reach};
 pub use cold::{cold, left};
-pub use first::{exhausted, out_of_reach, reserve, targets};
+pub use first::{exhausted, out_of_reach, outside_by, reserve, targets};
+pub use price::lines as prices;
 pub use rest::rest;
 pub use side::{HEADS, Row, columns, meaning, side};
 
@@ -33,7 +35,7 @@ pub(super) fn body(context: &Context, answer: &SeasonAnswer) -> String {
         out.push_str(&labelled(label, &words));
     }
     out.push('\n');
-    out.push_str(&side::table(context, answer, system));
+    out.push_str(&side::table(answer, system));
     out.push_str(&section("Cold water", cold(context, &answer.main, system)));
     out.push_str(&section("Gates", gates(context, &answer.main, system)));
     out.push_str(&section("Moves", moves(context, answer, &answer.main, system)));
@@ -61,10 +63,19 @@ fn section(heading: &str, lines: Vec<String>) -> String {
     out
 }
 
-/// A line, wrapped where it is a sentence; the blanks that make columns stay.
+/// A line, wrapped where it is too long: what stands in a first column stays there, the rest beside it.
 fn wrapped_row(line: &str) -> String {
     let line = format!("  {line}");
-    if line.width() <= super::WIDTH { format!("{line}\n") } else { wrapped(&line, 4) }
+    if line.width() <= super::WIDTH {
+        return format!("{line}\n");
+    }
+    let column = line.trim_start().find("  ").map(|at| at + 2);
+    let Some((label, text)) = column.and_then(|at| line.split_at_checked(at + 2)) else {
+        return wrapped(&line, 4);
+    };
+    let beside = label.width() + text.len() - text.trim_start().len();
+    let body = wrapped(&format!("{:beside$}{}", "", text.trim_start()), beside);
+    format!("{label:<beside$}{}", body.get(beside..).unwrap_or_default())
 }
 
 /// `2026-07-14 to 2026-11-30, plan steady (plans/steady.csv), case middling`

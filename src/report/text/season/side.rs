@@ -2,16 +2,16 @@
 
 use crate::problem::harmless;
 use crate::season::Exhausted;
-use crate::tasks::Context;
 use crate::tasks::season::{SeasonAnswer, SeasonRun};
 use crate::units::{Dimension, System, figure};
 
 use super::super::{fitted, wrapped};
 use super::short;
 
-/// Columns of the name, and of each figure.
-const NAME: usize = 32;
-const CELL: usize = 9;
+/// Columns of the names together, of a plan's alone, and of each figure.
+const NAME: usize = 36;
+const PLAN: usize = 16;
+const CELLS: [usize; 5] = [8, 9, 9, 7, 7];
 
 /// Heads of the figures, in the order of [`Row::cells`].
 pub const HEADS: [&str; 5] = ["runs out", "reserve", "outside", "worst", "moves"];
@@ -60,9 +60,13 @@ fn date(of: &Exhausted) -> String {
     }
 }
 
+fn in_columns(cells: [&str; 5]) -> String {
+    let wide: Vec<String> = cells.iter().zip(CELLS).map(|(cell, wide)| format!("{cell:>wide$}")).collect();
+    wide.concat()
+}
+
 /// The table in plain columns.
-pub(super) fn table(context: &Context, answer: &SeasonAnswer, system: System) -> String {
-    let _ = context;
+pub(super) fn table(answer: &SeasonAnswer, system: System) -> String {
     let rows = side(answer, system);
     let mut out = String::new();
     for line in columns(&rows) {
@@ -76,13 +80,14 @@ pub(super) fn table(context: &Context, answer: &SeasonAnswer, system: System) ->
 
 /// Rows in plain columns under their heads.
 pub fn columns(rows: &[Row]) -> Vec<String> {
-    let head: String = HEADS.iter().map(|head| format!("{head:>CELL$}")).collect();
+    let head = in_columns(HEADS);
     let mut out = vec![format!("  {:<NAME$}{head}", "plan, case, strategy")];
     out.extend(rows.iter().map(|row| {
         let mark = if row.main { ">" } else { " " };
         let seen = if row.foresight { " (seen)" } else { "" };
-        let name = fitted(&format!("{}{seen}", row.name.join(", ")), NAME - 1);
-        let cells: String = row.cells.iter().map(|cell| format!("{cell:>CELL$}")).collect();
+        let [plan, case, strategy] = &row.name;
+        let name = fitted(&format!("{}, {case}, {strategy}{seen}", fitted(plan, PLAN)), NAME - 1);
+        let cells = in_columns(row.cells.each_ref().map(String::as_str));
         format!("{mark} {name:<NAME$}{cells}").trim_end().to_owned()
     }));
     out

@@ -6,7 +6,7 @@ use chrono::{Datelike, Days};
 use ratatui::layout::Rect;
 use unicode_width::UnicodeWidthStr;
 
-use crate::plot::{Scale, ticks};
+use crate::plot::Scale;
 use crate::tui::draw::pen::Pen;
 use crate::tui::{Look, Role, Symbols};
 use crate::units::{Dimension, System};
@@ -22,11 +22,15 @@ const TALL: usize = 26;
 /// Most rows of gates.
 const GATES: usize = 8;
 /// Most bands of the water: as many as there are characters for.
-pub(super) const BANDS: u32 = 6;
+pub(super) const BANDS: usize = 6;
+/// Least span of the bands, units shown.
+const LEAST_SPAN: f64 = 1.0;
 /// Days of a season so short that weeks are marked instead of months.
 const SHORT: usize = 45;
 /// A threshold this near to an edge of a band, in bands, takes its place.
 const TOUCHES: f64 = 0.2;
+/// Room over and under curves, as a share of what they span.
+const MARGIN: f64 = 0.04;
 /// Least rows of curves.
 const CURVE: usize = 3;
 
@@ -69,8 +73,8 @@ impl Frame {
         let room = height - 4 - gates - title;
         let curves = 1 + usize::from(picture.cold.is_some());
         let room = room - if titles { curves } else { 0 };
-        let mut release = (room * 3 / 10).max(CURVE);
-        let mut cold = if picture.cold.is_some() { (room / 5).max(CURVE - 1) } else { 0 };
+        let mut release = (room * 35 / 100).max(CURVE);
+        let mut cold = if picture.cold.is_some() { (room * 17 / 100).max(CURVE - 1) } else { 0 };
         if room < release + cold + CURVE {
             (release, cold) = (room / 2, 0);
         }
@@ -147,9 +151,9 @@ fn col_of(day: usize, cols: usize, days: usize) -> usize {
     ((2 * day + 1) * cols / (2 * days.max(1))).min(cols.saturating_sub(1))
 }
 
-/// Edges of the bands of a picture, rising, in the unit shown: round, and no more bands than can be told apart. A
-/// threshold inside becomes an edge of its own, in place of one it would all but touch.
-pub(super) fn bands(
+/// Edges between the bands of a picture, rising, in the unit shown: round, and no more than there are characters for.
+/// A threshold inside is an edge too, in place of one it would all but touch; warm water gives up an edge for it.
+pub(super) fn edges(
     span: (f64, f64),
     threshold: Option<f64>,
     dimension: Dimension,
@@ -157,18 +161,15 @@ pub(super) fn bands(
 ) -> Vec<f64> {
     let unit = system.unit(dimension);
     let (low, high) = (unit.from_si(span.0), unit.from_si(span.1));
-    // water of one value fills one band
-    let high = if high > low { high } else { low + 1.0 };
-    let mut edges = ticks(low, high, BANDS - 1);
-    let (Some(first), Some(last)) = (edges.first().copied(), edges.last().copied()) else {
-        return vec![low, high];
-    };
-    let step = (last - first) / (edges.len() - 1).max(1) as f64;
-    if let Some(at) = threshold.map(|v| unit.from_si(v)).filter(|at| first < *at && *at < last) {
-        let ends = |edge: f64| edge <= first || edge >= last;
-        edges.retain(|edge| ends(*edge) || (edge - at).abs() > TOUCHES * step);
+    let Some(scale) = Scale::new(low, high.max(low + LEAST_SPAN)) else { return Vec::new() };
+    let most = u32::try_from(BANDS - 1).unwrap_or(1);
+    let mut edges = scale.marks(most).values;
+    let step = edges.windows(2).next().map_or(1.0, |pair| pair[1] - pair[0]);
+    if let Some(at) = threshold.map(|v| unit.from_si(v)).filter(|at| low < *at && *at < high) {
+        edges.retain(|edge| (edge - at).abs() > TOUCHES * step);
         edges.push(at);
         edges.sort_by(f64::total_cmp);
+        edges.truncate(BANDS - 1);
     }
     edges
 }
@@ -185,9 +186,10 @@ pub fn counted(dimension: Dimension, system: System, greatest: f64) -> (f64, Str
     (times, format!("{word}{}", unit.symbol()))
 }
 
-/// The scale of values in the unit shown, round for so many rows.
-pub(super) fn scale(low: f64, high: f64, rows: usize) -> Scale {
-    Scale::round(low, high, 1e-6 * high.abs().max(1.0), steps(rows))
+/// The scale of values in the unit shown: as narrow as they allow, so that little of the picture is empty.
+pub(super) fn scale(low: f64, high: f64) -> Option<Scale> {
+    let room = (MARGIN * (high - low)).max(1e-6 * high.abs().max(1.0));
+    Scale::new(low - room, high + room)
 }
 
 /// Ticks that so many rows have room for.
@@ -226,18 +228,17 @@ mod tests {
 
     #[test]
     fn scenario_bands_are_round_and_few() {
-        let c = |low, high, at| bands((low, high), at, Dimension::Temperature, System::Si);
-        assert_eq!(c(4.2, 23.8, None), [0.0, 5.0, 10.0, 15.0, 20.0, 25.0]);
-        assert_eq!(c(4.2, 23.8, Some(12.0)), [0.0, 5.0, 10.0, 12.0, 15.0, 20.0, 25.0]);
-        assert_eq!(c(4.2, 23.8, Some(10.5)), [0.0, 5.0, 10.5, 15.0, 20.0, 25.0]);
-        assert_eq!(c(4.2, 23.8, Some(0.1)), [0.0, 0.1, 5.0, 10.0, 15.0, 20.0, 25.0]);
-        assert_eq!(c(7.0, 7.0, Some(30.0)).first(), Some(&7.0));
-        let f = bands((5.0, 24.0), None, Dimension::Temperature, System::Us);
-        assert_eq!(f, [40.0, 50.0, 60.0, 70.0, 80.0]);
-        for k in 1..60 {
-            let bands = c(3.3, 3.3 + 0.7 * f64::from(k), Some(5.1));
-            assert!(bands.len() <= BANDS as usize + 1 && bands.len() >= 2, "{bands:?}");
-            assert!(bands.is_sorted(), "{bands:?}");
+        let c = |low, high, at| edges((low, high), at, Dimension::Temperature, System::Si);
+        assert_eq!(c(4.2, 23.8, None), [5.0, 10.0, 15.0, 20.0]);
+        assert_eq!(c(4.2, 23.8, Some(12.0)), [5.0, 10.0, 12.0, 15.0, 20.0]);
+        assert_eq!(c(4.2, 26.0, Some(12.0)), [5.0, 10.0, 12.0, 15.0, 20.0]);
+        assert_eq!(c(4.2, 23.8, Some(10.5)), [5.0, 10.5, 15.0, 20.0]);
+        assert_eq!(c(4.2, 23.8, Some(30.0)), [5.0, 10.0, 15.0, 20.0]);
+        let f = edges((5.0, 24.0), Some(12.0), Dimension::Temperature, System::Us);
+        assert_eq!(f, [50.0, 53.6, 60.0, 70.0]);
+        for k in 0..60 {
+            let edges = c(3.3, 3.3 + 0.7 * f64::from(k), Some(5.1));
+            assert!(edges.len() < BANDS && edges.is_sorted(), "{edges:?}");
         }
     }
 

@@ -123,7 +123,7 @@ pub enum GateDay {
 /// Draws a season.
 ///
 /// ```text
-/// # 5-10  % 10-15  o 15-20  : 20-25 C                 ~ thermocline  = open  - its zone  x lost
+/// @@ <10  ## 10-15  %% 15-20  oo >20 C          ~ thermocline  = open  - its zone  x lost
 ///            ____
 /// Upper 1410>::::____              water: cold is dense, warm is light
 /// Lower 1380>oo==::::____
@@ -132,7 +132,7 @@ pub enum GateDay {
 ///            10|---**********                  asked -, attainable :
 /// cold, kaf 100|**
 ///              |  ********
-/// moves         1   2      !1
+/// moves         1   2      !  1   (! where a limit forces it)
 /// outside              !!!!
 ///               |Jul 14  |Aug    |Sep  ^
 /// ```

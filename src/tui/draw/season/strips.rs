@@ -19,7 +19,7 @@ pub(super) fn draw(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: 
         let moved: usize = picture.moves.iter().filter(|m| here(&m.0)).map(|m| m.1).sum();
         let forced = picture.moves.iter().any(|m| here(&m.0) && m.2);
         let text = match moved {
-            0 if forced => "!".to_owned(),
+            _ if forced => "!".to_owned(),
             0 => continue,
             1..=9 => moved.to_string(),
             _ => "+".to_owned(),

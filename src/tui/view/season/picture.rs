@@ -5,9 +5,9 @@ use chrono::{Datelike, NaiveDate};
 use crate::plot::Stroke;
 use crate::problem::harmless;
 use crate::profile::{Sample, thermocline};
-use crate::season::{Layer, Layers, SeasonDay};
+use crate::season::{Layer, Layers, SeasonDay, TargetTally};
 use crate::site::Site;
-use crate::target::{DAM, YearDay};
+use crate::target::{DAM, Mark, Target, YearDay};
 use crate::tasks::season::SeasonRun;
 use crate::tui::draw::season::{
     CurvesThrough, GateDay, GateThrough, LineThrough, SeasonPicture, WaterDay, WaterThrough,
@@ -27,6 +27,7 @@ pub(super) fn picture(screen: &Screen) -> Option<SeasonPicture> {
         .calendar
         .iter()
         .filter_map(|on| Some((day_of(on.date)?, on.moved.len(), on.forced.is_some())));
+    let outside = run.run.days.iter().map(|d| d.date).enumerate();
     Some(SeasonPicture {
         system: screen.model.system(),
         first,
@@ -37,13 +38,13 @@ pub(super) fn picture(screen: &Screen) -> Option<SeasonPicture> {
         cold: cold(screen),
         gates: gates(screen),
         moves: moves.collect(),
-        outside: (0..run.run.days.len()).filter(|&i| screen.outside(i)).collect(),
+        outside: outside.filter(|day| screen.marks(day.1).any(|m| m.1.outside())).map(|day| day.0).collect(),
     })
 }
 
-impl Screen<'_> {
+impl<'a> Screen<'a> {
     /// The site under the air of the case shown.
-    pub(super) fn site(&self) -> &Site {
+    pub(super) fn site(&self) -> &'a Site {
         self.shown.ahead.context.site()
     }
 
@@ -78,11 +79,21 @@ impl Screen<'_> {
         }
     }
 
-    /// What the hard rules there ask on a date: the highest of their lows, the lowest of their highs.
-    pub(super) fn asked(&self, date: NaiveDate) -> [Option<f64>; 2] {
+    /// The hard rules there, each with how it came out.
+    pub(super) fn rules(&self) -> impl Iterator<Item = (&'a Target, &'a TargetTally)> {
         let (site, place) = (self.site(), self.site().river.as_ref().zip(self.point()));
         let name = place.and_then(|(river, p)| river.points.get(p)).map_or(DAM, |p| p.name.as_str());
-        let rules = || site.targets_on(date).map(|r| r.1).filter(|r| r.point == name && !r.soft);
+        let of = move |told: &'a TargetTally| {
+            let rule = site.targets.get(told.target)?;
+            Some((rule, told)).filter(|_| rule.point == name && !rule.soft)
+        };
+        self.shown.run.outcome.targets.iter().filter_map(of)
+    }
+
+    /// What they ask on a date: the highest of their lows, the lowest of their highs.
+    pub(super) fn asked(&self, date: NaiveDate) -> [Option<f64>; 2] {
+        let year_type = self.site().year_type.as_deref();
+        let rules = || self.rules().map(|r| r.0).filter(|rule| rule.valid_on(date, year_type));
         if self.session.season.oxygen {
             return [rules().filter_map(|r| r.oxygen_min_mg_l).reduce(f64::max), None];
         }
@@ -90,12 +101,14 @@ impl Screen<'_> {
         [rules().filter_map(|r| r.low_c).reduce(f64::max), rules().filter_map(|r| r.high_c).reduce(f64::min)]
     }
 
-    /// Whether a day lies outside what is asked at the place looked at.
-    pub(super) fn outside(&self, day: usize) -> bool {
-        let Some(day) = self.shown.run.run.days.get(day) else { return false };
-        let [low, high] = self.asked(day.date);
-        let value = self.value(day);
-        value.zip(low).is_some_and(|(v, low)| v < low) || value.zip(high).is_some_and(|(v, high)| v > high)
+    /// How each of them stands on a date, as the season counts it.
+    pub(super) fn marks(&self, date: NaiveDate) -> impl Iterator<Item = (&'a Target, Mark)> {
+        let oxygen = self.session.season.oxygen;
+        self.rules().filter_map(move |(rule, told)| {
+            let days = if oxygen { &told.oxygen_days } else { &told.temperature_days };
+            let at = days.binary_search_by_key(&date, |day| day.0).ok()?;
+            Some((rule, days.get(at)?.1))
+        })
     }
 }
 
@@ -212,7 +225,7 @@ fn cold(screen: &Screen) -> Option<CurvesThrough> {
         reserve.filter(|r| today >= r.from).map(|r| r.volume_m3)
     };
     let mut lines = vec![
-        line("all", (Role::Quiet, Stroke::Thin, "."), days.iter().map(|d| Some(d.total_m3)).collect()),
+        line("all", (Role::Plain, Stroke::Thin, "."), days.iter().map(|d| Some(d.total_m3)).collect()),
         line("usable", (Role::Cold, Stroke::Heavy, "*"), days.iter().map(|d| d.usable_m3).collect()),
     ];
     if reserve.is_some() {

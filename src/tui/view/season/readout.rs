@@ -4,10 +4,11 @@ use chrono::NaiveDate;
 
 use crate::mix::Setting;
 use crate::problem::harmless;
-use crate::report::text::season::exhausted_words;
-use crate::report::text::{missed, setting_words};
+use crate::report::text::season::outside_by;
+use crate::report::text::season::{exhausted_words, moved_words};
+use crate::report::text::setting_words;
 use crate::season::{Exhausted, GateMoves, SeasonDay};
-use crate::target::Standing;
+use crate::target::{Mark, Standing, Target};
 use crate::tui::draw::season::counted;
 use crate::tui::look::Role;
 use crate::units::{Dimension, System, figure, in_system, show};
@@ -63,8 +64,7 @@ fn of_day(screen: &Screen, (i, day): (usize, &SeasonDay), width: usize, out: &mu
         );
         add(&format!("{}: {words}", screen.place()), Role::Tried);
     }
-    let (words, role) = standing(screen, day);
-    add(&words, role);
+    standing(screen, day).into_iter().for_each(|(words, role)| add(&words, role));
     if let Some([low, high]) = reach(screen, day.date) {
         let (low, high) = (figure(low, system.unit(Dimension::Temperature), 1), c(high));
         add(&format!("attainable {low} to {high}"), Role::Plain);
@@ -83,52 +83,60 @@ fn of_day(screen: &Screen, (i, day): (usize, &SeasonDay), width: usize, out: &mu
     add(&format!("set: {}", setting_words(site, &setting, system)), Role::Plain);
     let calendar = &screen.shown.run.outcome.calendar;
     if let Some(on) = calendar.iter().rev().find(|on| on.date <= day.date) {
-        add(&format!("since {}: {}", on.date.format("%m-%d"), why(on, screen)), Role::Quiet);
+        add(&format!("since {}: {}", on.date.format("%m-%d"), why(on, screen)), Role::Plain);
     }
     if let Some(next) = calendar.iter().find(|on| on.date > day.date) {
         let book = next.book_by.map_or_else(String::new, |by| format!(", book by {}", by.format("%m-%d")));
-        let moves = plural(next.moved.len() as u64, "move");
-        add(&format!("next {}: {moves}{book}", next.date.format("%m-%d")), Role::Quiet);
+        let moves = moved_words(site, &next.moved, system);
+        add(&format!("next {}: {moves}{book}", next.date.format("%m-%d")), Role::Plain);
     }
     if day.overturned {
         add("the pool overturns", Role::Warn);
     }
 }
 
-/// Why gates were moved.
+/// What was moved, or what forced it.
 fn why(on: &GateMoves, screen: &Screen) -> String {
     match &on.forced {
-        Some((_, words)) => format!("FORCED, {}", harmless(&in_system(words, screen.model.system()))),
-        None => format!("decided, {} moved", on.moved.len()),
+        Some((_, words)) => format!("FORCED by {}", harmless(&in_system(words, screen.model.system()))),
+        None => moved_words(screen.site(), &on.moved, screen.model.system()),
     }
 }
 
-/// What is asked at the place looked at, and how the day stands.
-fn standing(screen: &Screen, day: &SeasonDay) -> (String, Role) {
+/// What is asked at the place looked at, and how the day stands: a line, and one for each rule it is outside of.
+fn standing(screen: &Screen, day: &SeasonDay) -> Vec<(String, Role)> {
     let system = screen.model.system();
     let oxygen = screen.session.season.oxygen;
     let dimension = if oxygen { Dimension::Concentration } else { Dimension::Temperature };
     let value = |v: f64| show(v, dimension, system, 1);
-    let asked = screen.asked(day.date);
-    let words = match asked {
-        [None, None] => return (format!("nothing is asked at {}", screen.place()), Role::Quiet),
-        [Some(low), None] => format!("asked {} at least", value(low)),
-        [None, Some(high)] => format!("asked {} at most", value(high)),
-        [Some(low), Some(high)] => {
-            format!("asked {} to {}", figure(low, system.unit(dimension), 1), value(high))
-        }
+    let low_of = |v: f64| figure(v, system.unit(dimension), 1);
+    let asked = match screen.asked(day.date) {
+        [None, None] => None,
+        [Some(low), None] => Some(format!("asked {} at least", value(low))),
+        [None, Some(high)] => Some(format!("asked {} at most", value(high))),
+        [Some(low), Some(high)] => Some(format!("asked {} to {}", low_of(low), value(high))),
     };
-    let difference = if oxygen { dimension } else { Dimension::TemperatureDifference };
-    let unit = system.unit(difference);
-    let off = |standing, by: f64| {
-        (format!("{words}: {}", missed(standing, unit.from_si(by), unit.symbol())), Role::Outside)
+    let marks: Vec<(&Target, Mark)> = screen.marks(day.date).collect();
+    let missed = marks.iter().filter(|(_, mark)| mark.outside()).map(|(rule, mark)| {
+        let by =
+            mark.by.map_or_else(String::new, |by| format!(" by {}", outside_by(rule, by, oxygen, system)));
+        let word = mark.standing.word().to_uppercase();
+        (format!("! {}: {word}{by}", harmless(&rule.name)), Role::Outside)
+    });
+    let missed: Vec<(String, Role)> = missed.collect();
+    let unknown = marks.iter().any(|(_, mark)| mark.standing == Standing::Unknown);
+    let end = match (missed.is_empty(), unknown, marks.is_empty()) {
+        (false, ..) => "",
+        (true, _, true) => "",
+        (true, true, _) => ": not all known",
+        (true, false, _) => ": inside",
     };
-    match (screen.value(day), asked) {
-        (None, _) => (format!("{words}: UNKNOWN"), Role::Warn),
-        (Some(v), [Some(low), _]) if v < low => off(Standing::Below, low - v),
-        (Some(v), [_, Some(high)]) if v > high => off(Standing::Above, v - high),
-        _ => (format!("{words}: inside"), Role::Inside),
-    }
+    let words = asked.unwrap_or_else(|| match marks.is_empty() {
+        true => format!("nothing is asked at {}", screen.place()),
+        false => format!("rules at {}", screen.place()),
+    });
+    let role = if marks.is_empty() || unknown || !missed.is_empty() { Role::Plain } else { Role::Inside };
+    std::iter::once((format!("{words}{end}"), role)).chain(missed).collect()
 }
 
 /// What is within reach, as the last decision found it.
