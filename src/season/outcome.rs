@@ -194,6 +194,9 @@ pub struct Outcome {
     pub left: Vec<Left>,
     /// First day from which no allowed mix reaches the high of the target at the required release.
     pub exhausted: Exhausted,
+    /// Stretches of days of decision on which no allowed mix came down to it, first and last day of each: it may have
+    /// been within reach again later.
+    pub out_of_reach: Vec<(NaiveDate, NaiveDate)>,
     /// First day under a reserve of the site; `None` where it has none.
     pub under_reserve: Option<Exhausted>,
     /// What is within reach on the days of decision.
@@ -255,6 +258,7 @@ pub fn outcome(setup: &Setup, run: &Run) -> Outcome {
         under_reserve: first(&reserves.iter().map(|r| &r.1).collect::<Vec<_>>()),
         reserves,
         exhausted: reached::exhausted(site, &reached, run),
+        out_of_reach: reached::stretches(&reached),
         reached,
         gates: gates::lives(site, days),
         calendar: gates::moves(site, run),

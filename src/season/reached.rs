@@ -86,3 +86,20 @@ fn of_rule(reached: &[Reached], rule: usize) -> Reach {
         (true, _) => Reach::OutSince(date),
     })
 }
+
+/// Days of decision in a row on which no allowed mix comes down to the high of the hard rules at the dam: first and
+/// last of each stretch.
+pub(super) fn stretches(reached: &[Reached]) -> Vec<(NaiveDate, NaiveDate)> {
+    let mut out: Vec<(NaiveDate, NaiveDate)> = Vec::new();
+    let mut goes_on = false;
+    for one in reached {
+        let is_out = one.by_c().is_some_and(|by| by > SAME_C);
+        match out.last_mut() {
+            Some(last) if is_out && goes_on => last.1 = one.date,
+            _ if is_out => out.push((one.date, one.date)),
+            _ => {}
+        }
+        goes_on = is_out;
+    }
+    out
+}

@@ -234,6 +234,14 @@ fn scenario_it_runs_out_where_no_mix_comes_down_to_the_high_up_to_the_end_of_the
     let out = of(&site, days(3), vec![decision(0, Some([13.0, 20.0]))], Vec::new());
     assert_eq!(out.reached[0].range_c(), (Some(8.0), Some(12.0)), "a wish bounds nothing");
     assert_abs_diff_eq!(out.reached[0].by_c().unwrap(), 1.0, epsilon = 1e-12);
+    let decisions = [13.0, 13.0, 8.0, 8.0, 11.0]
+        .iter()
+        .enumerate()
+        .map(|(i, coldest)| decision(7 * i as u64, Some([*coldest, 20.0])))
+        .collect();
+    let stretches = of(&site, days(30), decisions, Vec::new()).out_of_reach;
+    let on = [["2026-08-01", "2026-08-08"], ["2026-08-29", "2026-08-29"]].map(|s| (date(s[0]), date(s[1])));
+    assert_eq!(stretches, on);
     assert!(matches!(of(&site, days(3), Vec::new(), Vec::new()).exhausted, Exhausted::Unknown(_)));
 }
 

@@ -53,6 +53,7 @@ fn run(site: &Site, of: &SeasonRun) -> RunJson {
         gates: outcome.gates.iter().map(|g| gate(site, g)).collect(),
         exhausted_on: on(exhausted),
         exhausted_unknown: unknown(exhausted),
+        out_of_reach: outcome.out_of_reach.iter().map(|(a, b)| [a, b].map(ToString::to_string)).collect(),
         under_reserve_on: outcome.under_reserve.as_ref().and_then(on),
         targets: targets(site, of),
         score: ScoreJson {

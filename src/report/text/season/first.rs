@@ -18,6 +18,7 @@ use super::exhausted_words;
 pub(super) fn first(context: &Context, answer: &SeasonAnswer, system: System) -> Vec<(&'static str, String)> {
     let outcome = &answer.main.outcome;
     let mut out = vec![("Runs out", exhausted(outcome))];
+    out.extend(stretches(outcome).map(|words| ("", words)));
     out.extend(out_of_reach(answer).map(|words| ("", words)));
     out.extend(reserve(context, outcome, system).map(|words| ("Reserve", words)));
     let targets = targets(context, &answer.main, system);
@@ -42,6 +43,16 @@ pub fn exhausted(outcome: &Outcome) -> String {
         ),
         Exhausted::Unknown(why) => format!("not known: {}", harmless(why)),
     }
+}
+
+/// When no allowed mix reached it for a while, and one did again; `None` where that never was.
+pub fn stretches(outcome: &Outcome) -> Option<String> {
+    let told: Vec<String> = (outcome.out_of_reach.iter())
+        .filter(|(from, _)| Some(*from) != outcome.exhausted.on())
+        .map(|(from, to)| if from == to { from.to_string() } else { format!("{from} to {to}") })
+        .collect();
+    (!told.is_empty())
+        .then(|| format!("out of reach of every allowed mix, and within reach again: {}", told.join(", ")))
 }
 
 /// `in 3 of 3 cases no mix reaches it after 2026-09-12`; `None` of a single case.
@@ -90,9 +101,12 @@ pub fn targets(context: &Context, run: &SeasonRun, system: System) -> Vec<String
     let site = context.site();
     let of = |told: &TargetTally| {
         let rule = site.targets.get(told.target)?;
-        let range = told.temperature.as_ref().map(|t| counted(rule, t, system));
-        let floor =
-            told.oxygen.as_ref().map(|t| format!("oxygen {}", tally(t, &|by| format!("{by:.1} mg/L"))));
+        let range = told.temperature.as_ref().filter(|t| is_valid(t)).map(|t| counted(rule, t, system));
+        let floor = told
+            .oxygen
+            .as_ref()
+            .filter(|t| is_valid(t))
+            .map(|t| format!("oxygen {}", judged(t, &|by| outside_by(rule, by, true, system))));
         let words: Vec<String> = [range, floor].into_iter().flatten().collect();
         let place = harmless(&rule.point);
         let asks = rules::asks(rule, system);
@@ -105,11 +119,23 @@ pub fn targets(context: &Context, run: &SeasonRun, system: System) -> Vec<String
 
 /// A range's tally, its degree-days with it.
 fn counted(rule: &Target, of: &Tally, system: System) -> String {
-    let mut out = tally(of, &|by| amounts::by(rule, by, system));
+    let mut out = judged(of, &|by| outside_by(rule, by, false, system));
     if of.sum_outside > 0.0 && rule.is_of_temperature() && !rule.statistic.counts_days() {
         let _ = write!(out, ", {} in all", amounts::degree_days(of.sum_outside, system));
     }
     out
+}
+
+/// Whether the rule is valid on any day of the season.
+fn is_valid(of: &Tally) -> bool {
+    of.judged + of.unknown > 0
+}
+
+fn judged(of: &Tally, amount: &dyn Fn(f64) -> String) -> String {
+    if of.judged == 0 {
+        return format!("not judged on any of {}: the hours of a day are not known", days(of.unknown));
+    }
+    tally(of, amount, "not judged")
 }
 
 /// How far outside a rule: of its oxygen floor, or in the unit of its range.

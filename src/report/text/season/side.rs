@@ -1,7 +1,7 @@
 //! The seasons of an answer side by side.
 
 use crate::problem::harmless;
-use crate::season::Exhausted;
+use crate::season::{Exhausted, Outcome};
 use crate::tasks::season::{SeasonAnswer, SeasonRun};
 use crate::units::{Dimension, System, figure};
 
@@ -37,7 +37,7 @@ pub fn side(answer: &SeasonAnswer, system: System) -> Vec<Row> {
         Row {
             name: [&run.run.plan, &run.run.case, &run.run.strategy].map(|name| harmless(name)),
             cells: [
-                date(&outcome.exhausted),
+                runs_out(outcome),
                 outcome.under_reserve.as_ref().map_or_else(|| "-".to_owned(), date),
                 format!("{} d", score.days_outside),
                 figure(score.worst_c, unit, 1),
@@ -50,6 +50,14 @@ pub fn side(answer: &SeasonAnswer, system: System) -> Vec<Row> {
     let mut rows: Vec<Row> = answer.runs().enumerate().map(row).collect();
     rows.sort_by_key(|row| row.foresight);
     rows
+}
+
+/// When it runs out; in brackets the first day it is out of reach, where it is within reach again later.
+fn runs_out(outcome: &Outcome) -> String {
+    match (&outcome.exhausted, outcome.out_of_reach.first()) {
+        (Exhausted::NotBy(_), Some((from, _))) => format!("({})", short(*from)),
+        (of, _) => date(of),
+    }
 }
 
 fn date(of: &Exhausted) -> String {
@@ -86,7 +94,7 @@ pub fn columns(rows: &[Row]) -> Vec<String> {
         let mark = if row.main { ">" } else { " " };
         let seen = if row.foresight { " (seen)" } else { "" };
         let [plan, case, strategy] = &row.name;
-        let name = fitted(&format!("{}, {case}, {strategy}{seen}", fitted(plan, PLAN)), NAME - 1);
+        let name = fitted(&format!("{}, {case}, {strategy}{seen}", fitted(plan, PLAN).trim_end()), NAME - 1);
         let cells = in_columns(row.cells.each_ref().map(String::as_str));
         format!("{mark} {name:<NAME$}{cells}").trim_end().to_owned()
     }));
@@ -102,7 +110,7 @@ pub fn meaning(rows: &[Row], system: System) -> String {
         ""
     };
     format!(
-        "outside: days outside the hard targets, summed over them; worst: farthest outside, {}; not: not by the end of the \
+        "runs out: in brackets where it is within reach again later; outside: days outside the hard targets, summed over them; worst: farthest outside, {}; not: not by the end of the \
          season{seen}",
         unit.symbol()
     )
