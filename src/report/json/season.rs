@@ -52,8 +52,8 @@ fn run(site: &Site, of: &SeasonRun) -> RunJson {
         days: (of.run.days.iter().enumerate()).map(|(i, d)| day(site, of, d, cold.first(), i)).collect(),
         gates: outcome.gates.iter().map(|g| gate(site, g)).collect(),
         exhausted_on: on(exhausted),
+        exhausted_until: outcome.exhausted_until.map(|date| date.to_string()),
         exhausted_unknown: unknown(exhausted),
-        out_of_reach: outcome.out_of_reach.iter().map(|(a, b)| [a, b].map(ToString::to_string)).collect(),
         under_reserve_on: outcome.under_reserve.as_ref().and_then(on),
         targets: targets(site, of),
         score: ScoreJson {

@@ -53,7 +53,8 @@ pub fn moves(context: &Context, answer: &SeasonAnswer, run: &SeasonRun, system: 
     out
 }
 
-fn moved_words(site: &Site, moves: &[Move], system: System) -> String {
+/// Which gates move, from where to where.
+pub fn moved_words(site: &Site, moves: &[Move], system: System) -> String {
     moved(site, moves, system).join(", ")
 }
 

@@ -18,7 +18,6 @@ use super::exhausted_words;
 pub(super) fn first(context: &Context, answer: &SeasonAnswer, system: System) -> Vec<(&'static str, String)> {
     let outcome = &answer.main.outcome;
     let mut out = vec![("Runs out", exhausted(outcome))];
-    out.extend(stretches(outcome).map(|words| ("", words)));
     out.extend(out_of_reach(answer).map(|words| ("", words)));
     out.extend(reserve(context, outcome, system).map(|words| ("Reserve", words)));
     let targets = targets(context, &answer.main, system);
@@ -33,47 +32,40 @@ pub(super) fn first(context: &Context, answer: &SeasonAnswer, system: System) ->
 
 /// When no allowed mix reaches a target any more.
 pub fn exhausted(outcome: &Outcome) -> String {
-    match &outcome.exhausted {
-        Exhausted::On(date) => format!(
-            "from {date} on no allowed mix comes down to the high of the target at the dam at the release of the day, to \
-             the end of the rule or the season (seen on days of decision)"
-        ),
-        Exhausted::NotBy(date) => format!(
-            "not by {date}: on the last day of decision of every target at the dam an allowed mix comes down to its high"
-        ),
-        Exhausted::Unknown(why) => format!("not known: {}", harmless(why)),
+    let what = "no allowed mix comes down to the high of the target at the dam at the release of the day";
+    match (&outcome.exhausted, outcome.exhausted_until) {
+        (Exhausted::On(date), None) => {
+            format!("from {date} on {what}, to the end (seen on days of decision)")
+        }
+        (Exhausted::On(date), Some(until)) => {
+            format!("from {date} on {what}, until {until} (seen on days of decision)")
+        }
+        (Exhausted::NotBy(date), _) => {
+            format!(
+                "not by {date}: on every day of decision an allowed mix comes down to the high of the target at the dam"
+            )
+        }
+        (Exhausted::Unknown(why), _) => format!("not known: {}", harmless(why)),
     }
 }
 
-/// When no allowed mix reached it for a while, and one did again; `None` where that never was.
-pub fn stretches(outcome: &Outcome) -> Option<String> {
-    let told: Vec<String> = (outcome.out_of_reach.iter())
-        .filter(|(from, _)| Some(*from) != outcome.exhausted.on())
-        .map(|(from, to)| if from == to { from.to_string() } else { format!("{from} to {to}") })
-        .collect();
-    (!told.is_empty())
-        .then(|| format!("out of reach of every allowed mix, and within reach again: {}", told.join(", ")))
-}
-
-/// `in 3 of 3 cases no mix reaches it after 2026-09-12`; `None` of a single case.
+/// `in 3 of 3 cases no mix reaches it any more, first from 2026-09-12 on (warm), last from 2026-10-03 on (cool)`; `None`
+/// of a single case.
 pub fn out_of_reach(answer: &SeasonAnswer) -> Option<String> {
     let cases = answer.cases();
     let known = cases.iter().filter(|r| !matches!(r.outcome.exhausted, Exhausted::Unknown(_))).count();
-    let dates: Vec<_> = cases.iter().filter_map(|r| r.outcome.exhausted.on()).collect();
-    let (first, last) = (dates.iter().min(), dates.iter().max());
+    let mut dates: Vec<_> =
+        cases.iter().filter_map(|r| Some((r.outcome.exhausted.on()?, harmless(&r.run.case)))).collect();
+    dates.sort();
     if known < 2 {
         return None;
     }
-    Some(match (first, last) {
-        (Some(first), Some(last)) if first == last => {
-            format!("in {} of {known} cases no mix reaches it from {last} on", dates.len())
-        }
-        (Some(first), Some(last)) => format!(
-            "in {} of {known} cases no mix reaches it from {last} on, in the first of them from {first} on",
-            dates.len()
-        ),
-        _ => format!("it runs out in none of {known} cases"),
-    })
+    let Some((first, last)) = dates.first().zip(dates.last()) else {
+        return Some(format!("it runs out in none of {known} cases"));
+    };
+    let of = |(date, case): &(chrono::NaiveDate, String)| format!("from {date} on ({case})");
+    let last = if dates.len() > 1 { format!(", last {}", of(last)) } else { String::new() };
+    Some(format!("in {} of {known} cases no mix reaches it any more, first {}{last}", dates.len(), of(first)))
 }
 
 /// When the first reserve is gone into; `None` of a site without.

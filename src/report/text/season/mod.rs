@@ -19,9 +19,9 @@ use crate::tasks::season::SeasonAnswer;
 
 use super::{labelled, list, wrapped};
 
-pub use calendar::{gates, moves, reach};
+pub use calendar::{gates, moved_words, moves, reach};
 pub use cold::{cold, left};
-pub use first::{exhausted, out_of_reach, outside_by, reserve, stretches, targets};
+pub use first::{exhausted, out_of_reach, outside_by, reserve, targets};
 pub use price::lines as prices;
 pub use rest::rest;
 pub use side::{HEADS, Row, columns, meaning, side};

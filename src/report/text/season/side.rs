@@ -1,7 +1,7 @@
 //! The seasons of an answer side by side.
 
 use crate::problem::harmless;
-use crate::season::{Exhausted, Outcome};
+use crate::season::Exhausted;
 use crate::tasks::season::{SeasonAnswer, SeasonRun};
 use crate::units::{Dimension, System, figure};
 
@@ -37,7 +37,7 @@ pub fn side(answer: &SeasonAnswer, system: System) -> Vec<Row> {
         Row {
             name: [&run.run.plan, &run.run.case, &run.run.strategy].map(|name| harmless(name)),
             cells: [
-                runs_out(outcome),
+                date(&outcome.exhausted),
                 outcome.under_reserve.as_ref().map_or_else(|| "-".to_owned(), date),
                 format!("{} d", score.days_outside),
                 figure(score.worst_c, unit, 1),
@@ -50,14 +50,6 @@ pub fn side(answer: &SeasonAnswer, system: System) -> Vec<Row> {
     let mut rows: Vec<Row> = answer.runs().enumerate().map(row).collect();
     rows.sort_by_key(|row| row.foresight);
     rows
-}
-
-/// When it runs out; in brackets the first day it is out of reach, where it is within reach again later.
-fn runs_out(outcome: &Outcome) -> String {
-    match (&outcome.exhausted, outcome.out_of_reach.first()) {
-        (Exhausted::NotBy(_), Some((from, _))) => format!("({})", short(*from)),
-        (of, _) => date(of),
-    }
 }
 
 fn date(of: &Exhausted) -> String {
@@ -110,7 +102,7 @@ pub fn meaning(rows: &[Row], system: System) -> String {
         ""
     };
     format!(
-        "runs out: in brackets where it is within reach again later; outside: days outside the hard targets, summed over them; worst: farthest outside, {}; not: not by the end of the \
+        "outside: days outside the hard targets, summed over them; worst: farthest outside, {}; not: not by the end of the \
          season{seen}",
         unit.symbol()
     )

@@ -73,8 +73,8 @@ impl Frame {
         let room = height - 4 - gates - title;
         let curves = 1 + usize::from(picture.cold.is_some());
         let room = room - if titles { curves } else { 0 };
-        let mut release = (room * 3 / 10).max(CURVE);
-        let mut cold = if picture.cold.is_some() { (room / 5).max(CURVE - 1) } else { 0 };
+        let mut release = (room * 35 / 100).max(CURVE);
+        let mut cold = if picture.cold.is_some() { (room * 17 / 100).max(CURVE - 1) } else { 0 };
         if room < release + cold + CURVE {
             (release, cold) = (room / 2, 0);
         }

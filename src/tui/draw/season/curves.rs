@@ -23,12 +23,6 @@ pub(super) fn draw(
     let Some(y) = scale(shown(curves.span.0), shown(curves.span.1)) else { return };
     let row_of = |value: f64| top + rows - 1 - y.cell(shown(value), rows).unwrap_or(0);
     let ascii = look.symbols == Symbols::Ascii;
-    for col in 0..frame.cols {
-        let Some([low, high]) = curves.shaded.1.get(frame.day_of(col)).copied().flatten() else { continue };
-        for row in row_of(high)..=row_of(low) {
-            pen.put(frame.side + col, row, if ascii { ":" } else { "░" }, Role::Quiet);
-        }
-    }
     if let Some(x) = Scale::new(0.0, picture.days as f64) {
         for line in &curves.lines {
             let mut dots = Dots::new(look.symbols.grain(), frame.cols, rows);
@@ -42,6 +36,13 @@ pub(super) fn draw(
                 let plain = look.symbols.grain() == Grain::Ascii;
                 pen.put(frame.side + col, top + row, if plain { line.mark } else { &glyph }, line.role);
             }
+        }
+    }
+    // behind the curves: a cell holds one or the other
+    for col in 0..frame.cols {
+        let Some([low, high]) = curves.shaded.1.get(frame.day_of(col)).copied().flatten() else { continue };
+        for row in row_of(high)..=row_of(low) {
+            pen.fill(frame.side + col, row, if ascii { ":" } else { "░" }, Role::Quiet);
         }
     }
     side(curves, &counted, (top, rows), frame, pen, (&y, ascii));

@@ -50,68 +50,122 @@ fn at(day: &WaterDay, bed_m: f64, elevation_m: f64) -> Option<Option<f64>> {
     day.layers.iter().find(|layer| elevation_m <= layer.0).map(|layer| layer.1)
 }
 
+/// The cells of the water: what is put last is drawn.
+struct Cells<'a> {
+    frame: &'a Frame,
+    scale: Scale,
+    cells: Vec<Option<(&'static str, Role)>>,
+}
+
+impl<'a> Cells<'a> {
+    fn new(frame: &'a Frame, scale: Scale) -> Self {
+        Self { frame, scale, cells: vec![None; frame.cols * frame.water.1] }
+    }
+
+    /// Row of an elevation, from the top of the water's part.
+    fn row(&self, elevation_m: f64) -> usize {
+        let rows = self.frame.water.1;
+        rows - 1 - self.scale.cell(elevation_m, rows).unwrap_or(0)
+    }
+
+    /// Elevation of the middle of a row, m.
+    fn middle_m(&self, row: usize) -> f64 {
+        self.scale.value(1.0 - (row as f64 + 0.5) / self.frame.water.1 as f64)
+    }
+
+    fn put(&mut self, col: usize, row: usize, glyph: &'static str, role: Role) {
+        if let Some(cell) = self.cells.get_mut(row * self.frame.cols + col) {
+            *cell = Some((glyph, role));
+        }
+    }
+
+    /// A mark where no water is.
+    fn over(&mut self, col: usize, row: usize, glyph: &'static str, role: Role) {
+        if self.cells.get(row * self.frame.cols + col).is_some_and(Option::is_none) {
+            self.put(col, row, glyph, role);
+        }
+    }
+
+    fn draw(&self, pen: &mut Pen) {
+        for (i, cell) in self.cells.iter().enumerate() {
+            if let Some((glyph, role)) = cell {
+                let (row, col) = (i / self.frame.cols, i % self.frame.cols);
+                pen.put(self.frame.side + col, self.frame.water.0 + row, glyph, *role);
+            }
+        }
+    }
+}
+
 pub(super) fn draw(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: Look) {
     let water = &picture.water;
-    let (top, rows) = frame.water;
     let Some(scale) = Scale::new(water.elevations_m.0, water.elevations_m.1) else { return };
     let marks = marks(look);
     let edges = edges(water.span, water.threshold, water.dimension, picture.system);
-    let unit = picture.system.unit(water.dimension);
-    let row_of = |elevation_m: f64| top + rows - 1 - scale.cell(elevation_m, rows).unwrap_or(0);
+    let mut cells = Cells::new(frame, scale);
     for col in 0..frame.cols {
-        let Some(day) = water.days.get(frame.day_of(col)) else { continue };
-        let surface_m = day.layers.last().map(|l| l.0);
-        for row in 0..rows {
-            // a cell shows the water in its middle
-            let elevation_m = scale.value(1.0 - (row as f64 + 0.5) / rows as f64);
-            let Some(value) = at(day, water.elevations_m.0, elevation_m) else { continue };
-            let (glyph, role) = value.map_or((UNKNOWN, Role::Quiet), |v| {
-                let band = band(&edges, unit.from_si(v));
-                (marks.fill[band.min(marks.fill.len() - 1)], Role::Band(band))
-            });
-            pen.put(frame.side + col, top + row, glyph, role);
-        }
-        if let Some(surface_m) = surface_m {
-            // over the cells that show water
-            let middle = |row: usize| scale.value(1.0 - ((row - top) as f64 + 0.5) / rows as f64);
-            let row = row_of(surface_m);
-            let row =
-                if middle(row) <= surface_m { row.checked_sub(1).filter(|r| *r >= top) } else { Some(row) };
-            row.into_iter().for_each(|row| pen.fill(frame.side + col, row, marks.surface, Role::Plain));
+        if let Some(day) = water.days.get(frame.day_of(col)) {
+            column(picture, day, col, &edges, &marks, &mut cells);
         }
     }
-    picture.gates.iter().for_each(|gate| zone(gate, frame, pen, &marks, &row_of));
+    picture.gates.iter().for_each(|gate| zone(gate, &marks, &mut cells));
     for col in 0..frame.cols {
         let steepest_m = water.days.get(frame.day_of(col)).and_then(|day| day.thermocline_m);
         if let Some(elevation_m) = steepest_m {
-            pen.put(frame.side + col, row_of(elevation_m), marks.thermocline, Role::Strong);
+            cells.put(col, cells.row(elevation_m), marks.thermocline, Role::Strong);
         }
     }
-    picture.gates.iter().for_each(|gate| open(gate, frame, pen, &marks, &row_of));
-    side(picture, frame, pen, look, &row_of);
+    picture.gates.iter().for_each(|gate| open(gate, &marks, &mut cells));
+    cells.draw(pen);
+    side(picture, &cells, pen, look);
     legend(picture, frame, pen, &marks, &edges);
 }
 
+/// The water of a day, and the line of its surface over it.
+fn column(
+    picture: &SeasonPicture,
+    day: &WaterDay,
+    col: usize,
+    edges: &[f64],
+    marks: &Marks,
+    cells: &mut Cells,
+) {
+    let unit = picture.system.unit(picture.water.dimension);
+    for row in 0..cells.frame.water.1 {
+        // a cell shows the water in its middle
+        let Some(value) = at(day, picture.water.elevations_m.0, cells.middle_m(row)) else { continue };
+        let (glyph, role) = value.map_or((UNKNOWN, Role::Quiet), |v| {
+            let band = band(edges, unit.from_si(v)).min(BANDS - 1);
+            (marks.fill[band], Role::Band(band))
+        });
+        cells.put(col, row, glyph, role);
+    }
+    if let Some((surface_m, _)) = day.layers.last() {
+        let row = cells.row(*surface_m);
+        let row = if cells.middle_m(row) <= *surface_m { row.checked_sub(1) } else { Some(row) };
+        row.into_iter().for_each(|row| cells.over(col, row, marks.surface, Role::Plain));
+    }
+}
+
 /// The limits of the zone of an open gate, with gaps through which the water is seen.
-fn zone(gate: &GateThrough, frame: &Frame, pen: &mut Pen, marks: &Marks, row_of: &dyn Fn(f64) -> usize) {
-    for col in (0..frame.cols).step_by(GAPS) {
-        let Some(GateDay::Open(Some(zone))) = gate.days.get(frame.day_of(col)) else { continue };
+fn zone(gate: &GateThrough, marks: &Marks, cells: &mut Cells) {
+    for col in (0..cells.frame.cols).step_by(GAPS) {
+        let Some(GateDay::Open(Some(zone))) = gate.days.get(cells.frame.day_of(col)) else { continue };
         for limit_m in zone {
-            pen.put(frame.side + col, row_of(*limit_m), marks.zone, Role::Zone);
+            cells.put(col, cells.row(*limit_m), marks.zone, Role::Zone);
         }
     }
 }
 
 /// An open gate, and where it is lost and comes back.
-fn open(gate: &GateThrough, frame: &Frame, pen: &mut Pen, marks: &Marks, row_of: &dyn Fn(f64) -> usize) {
-    let row = row_of(gate.elevation_m);
-    for col in 0..frame.cols {
-        if let Some(GateDay::Open(_)) = gate.days.get(frame.day_of(col)) {
-            pen.put(frame.side + col, row, marks.open, Role::Strong);
+fn open(gate: &GateThrough, marks: &Marks, cells: &mut Cells) {
+    let row = cells.row(gate.elevation_m);
+    for col in 0..cells.frame.cols {
+        if let Some(GateDay::Open(_)) = gate.days.get(cells.frame.day_of(col)) {
+            cells.put(col, row, marks.open, Role::Strong);
         }
     }
     for (day, lost) in turns(&gate.days) {
-        pen.put(frame.side + frame.col_of(day), row, if lost { "x" } else { "+" }, Role::Outside);
+        cells.put(cells.frame.col_of(day), row, if lost { "x" } else { "+" }, Role::Outside);
     }
 }
 
@@ -127,38 +181,29 @@ pub(super) fn turns(days: &[GateDay]) -> Vec<(usize, bool)> {
 }
 
 /// Gates at their elevations, and elevations where no gate stands.
-fn side(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: Look, row_of: &dyn Fn(f64) -> usize) {
-    let ascii = look.symbols == Symbols::Ascii;
-    let (top, rows) = frame.water;
-    let (line, tick) = if ascii { ("|", ">") } else { ("│", "┤") };
-    let end = frame.side - 1;
+fn side(picture: &SeasonPicture, cells: &Cells, pen: &mut Pen, look: Look) {
+    let (top, rows) = cells.frame.water;
+    let (line, tick) = if look.symbols == Symbols::Ascii { ("|", ">") } else { ("│", "┤") };
+    let end = cells.frame.side - 1;
     (top..top + rows).for_each(|row| pen.put(end, row, line, Role::Quiet));
     let mut gates: Vec<&GateThrough> = picture.gates.iter().collect();
     gates.sort_by(|a, b| b.elevation_m.total_cmp(&a.elevation_m));
-    let wants: Vec<usize> = gates.iter().map(|g| row_of(g.elevation_m) - top).collect();
-    let mut taken: Vec<Vec<&str>> = vec![Vec::new(); rows];
-    for (gate, row) in gates.iter().zip(on_rows(&wants, rows)) {
-        if let Some(names) = taken.get_mut(row) {
+    let wants: Vec<usize> = gates.iter().map(|g| cells.row(g.elevation_m)).collect();
+    let mut names: Vec<Vec<&str>> = vec![Vec::new(); rows];
+    for ((gate, row), own) in gates.iter().zip(on_rows(&wants, rows)).zip(&wants) {
+        if let Some(names) = names.get_mut(row) {
             names.push(&gate.name);
         }
-        pen.put(end, row_of(gate.elevation_m), tick, Role::Quiet);
+        pen.put(end, top + own, tick, Role::Quiet);
     }
     let unit = picture.system.unit(Dimension::Length);
-    for (row, names) in taken.iter().enumerate() {
+    let mut numbered = false;
+    for (row, names) in names.iter().enumerate() {
+        // every second row without a gate is enough
+        numbered = names.is_empty() && !numbered;
         let text = match names[..] {
-            [] => {
-                let Some(scale) = Scale::new(picture.water.elevations_m.0, picture.water.elevations_m.1)
-                else {
-                    continue;
-                };
-                // every second row is enough
-                if row > 0 && taken.get(row - 1).is_none_or(|above| above.is_empty()) && row % 2 == 1 {
-                    continue;
-                }
-                let shown = unit.from_si(scale.value(1.0 - (row as f64 + 0.5) / rows as f64));
-                pen.put_before(end, top + row, &format!("{shown:.0} "), Role::Quiet);
-                continue;
-            }
+            [] if numbered => format!("{:.0} ", unit.from_si(cells.middle_m(row))),
+            [] => continue,
             [name] => name.to_owned(),
             [name, ..] if names.join(" ").width() > end => {
                 let more = format!("+{}", names.len() - 1);
@@ -166,7 +211,8 @@ fn side(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: Look, row_o
             }
             _ => names.join(" "),
         };
-        pen.put_before(end, top + row, &cut(&text, end), Role::Plain);
+        let role = if numbered { Role::Quiet } else { Role::Plain };
+        pen.put_before(end, top + row, &cut(&text, end), role);
     }
 }
 
@@ -175,6 +221,7 @@ fn legend(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, marks: &Marks, 
     let unit = picture.system.unit(picture.water.dimension);
     // a threshold may not be round
     let edge = |v: f64| if (v - v.round()).abs() < 0.05 { format!("{v:.0}") } else { format!("{v:.1}") };
+    let wide = if frame.titles { 2 } else { 1 };
     let mut col = 0;
     for (i, glyph) in marks.fill.iter().enumerate().take(edges.len() + 1) {
         let low = i.checked_sub(1).and_then(|i| edges.get(i));
@@ -184,9 +231,9 @@ fn legend(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, marks: &Marks, 
             (Some(low), None) => format!(">{}", edge(*low)),
             (None, None) => "all".to_owned(),
         };
-        pen.put(col, frame.legend, &glyph.repeat(2), Role::Band(i));
-        pen.put(col + 3, frame.legend, &text, Role::Quiet);
-        col += text.width() + 5;
+        pen.put(col, frame.legend, &glyph.repeat(wide), Role::Band(i));
+        pen.put(col + wide + 1, frame.legend, &text, Role::Quiet);
+        col += text.width() + 2 * wide + 1;
     }
     pen.put(col.saturating_sub(1), frame.legend, unit.symbol(), Role::Quiet);
     col += unit.symbol().width() + 1;

@@ -225,7 +225,7 @@ fn cold(screen: &Screen) -> Option<CurvesThrough> {
         reserve.filter(|r| today >= r.from).map(|r| r.volume_m3)
     };
     let mut lines = vec![
-        line("all", (Role::Quiet, Stroke::Thin, "."), days.iter().map(|d| Some(d.total_m3)).collect()),
+        line("all", (Role::Plain, Stroke::Thin, "."), days.iter().map(|d| Some(d.total_m3)).collect()),
         line("usable", (Role::Cold, Stroke::Heavy, "*"), days.iter().map(|d| d.usable_m3).collect()),
     ];
     if reserve.is_some() {

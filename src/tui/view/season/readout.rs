@@ -4,8 +4,8 @@ use chrono::NaiveDate;
 
 use crate::mix::Setting;
 use crate::problem::harmless;
-use crate::report::text::season::exhausted_words;
 use crate::report::text::season::outside_by;
+use crate::report::text::season::{exhausted_words, moved_words};
 use crate::report::text::setting_words;
 use crate::season::{Exhausted, GateMoves, SeasonDay};
 use crate::target::{Mark, Standing, Target};
@@ -83,23 +83,23 @@ fn of_day(screen: &Screen, (i, day): (usize, &SeasonDay), width: usize, out: &mu
     add(&format!("set: {}", setting_words(site, &setting, system)), Role::Plain);
     let calendar = &screen.shown.run.outcome.calendar;
     if let Some(on) = calendar.iter().rev().find(|on| on.date <= day.date) {
-        add(&format!("since {}: {}", on.date.format("%m-%d"), why(on, screen)), Role::Quiet);
+        add(&format!("since {}: {}", on.date.format("%m-%d"), why(on, screen)), Role::Plain);
     }
     if let Some(next) = calendar.iter().find(|on| on.date > day.date) {
         let book = next.book_by.map_or_else(String::new, |by| format!(", book by {}", by.format("%m-%d")));
-        let moves = plural(next.moved.len() as u64, "move");
-        add(&format!("next {}: {moves}{book}", next.date.format("%m-%d")), Role::Quiet);
+        let moves = moved_words(site, &next.moved, system);
+        add(&format!("next {}: {moves}{book}", next.date.format("%m-%d")), Role::Plain);
     }
     if day.overturned {
         add("the pool overturns", Role::Warn);
     }
 }
 
-/// Why gates were moved.
+/// What was moved, or what forced it.
 fn why(on: &GateMoves, screen: &Screen) -> String {
     match &on.forced {
-        Some((_, words)) => format!("FORCED, {}", harmless(&in_system(words, screen.model.system()))),
-        None => format!("decided, {} moved", on.moved.len()),
+        Some((_, words)) => format!("FORCED by {}", harmless(&in_system(words, screen.model.system()))),
+        None => moved_words(screen.site(), &on.moved, screen.model.system()),
     }
 }
 
