@@ -167,7 +167,10 @@ fn seasons() -> Option<bool> {
     let count = YEARS as usize;
     let (half_s, _) = of_years(count / 2);
     let (years_s, whole) = of_years(count);
-    println!("{count} years: {years_s:.2} s, {whole} to their end; {:.2} times half of them", years_s / half_s);
+    println!(
+        "{count} years: {years_s:.2} s, {whole} to their end; {:.2} times half of them",
+        years_s / half_s
+    );
     Some(
         took_s < SLOWEST_S
             && years_s < SLOWEST_YEARS_S
@@ -198,7 +201,9 @@ fn convergence() -> Option<()> {
             .collect();
         let mean = apart.iter().sum::<f64>() / apart.len().max(1) as f64;
         let most = apart.iter().copied().fold(0.0, f64::max);
-        println!("layers of {thick} m halved: the release moves by {mean:.3} C in the mean, {most:.3} C at most");
+        println!(
+            "layers of {thick} m halved: the release moves by {mean:.3} C in the mean, {most:.3} C at most"
+        );
     }
     Some(())
 }
