@@ -110,7 +110,7 @@ impl<'a> Going<'a> {
     }
 
     /// Goes through the days that are left. `None` where the caller stops it.
-    pub(super) fn to_the_end(mut self, progress: Progress) -> Option<Run> {
+    pub(super) fn finished(mut self, progress: Progress) -> Option<Run> {
         while self.is_on() {
             if progress(self.share_done()).is_break() {
                 return None;
@@ -208,7 +208,7 @@ impl<'a> Going<'a> {
         match found {
             Some(((_, None), asked)) => {
                 let asked = asked.at_release(&self.site, morning.release_m3s, morning.profile.pool_m);
-                let chosen = self.on(morning, 0.0, |choice| choice.given(asked, progress))?;
+                let chosen = self.on(morning, 0.0, |choice| choice.given(&asked, progress))?;
                 Ok(decision(date, why, chosen))
             }
             Some(((_, Some(check)), _)) => self.best(morning, Why::Forced(check), 0.0, progress),

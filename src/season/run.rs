@@ -117,7 +117,7 @@ pub struct Run {
 pub fn run(setup: &Setup, progress: Progress) -> Option<Run> {
     match setup.choosing {
         Choosing::By(Strategy::Thrift) => thrift(setup, progress),
-        _ => Going::new(setup)?.to_the_end(progress),
+        _ => Going::new(setup)?.finished(progress),
     }
 }
 
