@@ -7,7 +7,9 @@ use chrono::NaiveDate;
 use crate::mix::limits::{self, Before, Check, Move, Moves, Rule};
 use crate::mix::{Asked, Day, Drawn, Setting, checks};
 use crate::profile::Profile;
-use crate::rank::{Criterion, Extreme, Full, Order, Progress, Question, Ranked, Ranking, Stopped, rank};
+use crate::rank::{
+    Criterion, Extreme, Full, Order, Progress, Question, Ranked, Ranking, Stopped, rank_roughly,
+};
 use crate::site::{Outlet, SAME_OPENING, Site};
 
 use super::refine::refined;
@@ -168,7 +170,7 @@ impl Choice<'_> {
     /// of their positions.
     fn ranked(&self, progress: Progress) -> Result<Ways, NoMix> {
         let ranked = |site: &Site| {
-            rank(&self.question(site), progress).map_err(|stopped| match stopped {
+            rank_roughly(&self.question(site), progress).map_err(|stopped| match stopped {
                 Stopped::Cancelled => NoMix::Cancelled,
                 Stopped::Refused(problem) => NoMix::Allowed(None, problem.words),
             })

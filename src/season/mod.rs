@@ -46,7 +46,7 @@ pub use inflow::{Neutral, neutral};
 pub use layers::{Layer, Layers};
 pub use learn::{
     Apart, DIFFUSION, LEAST_DAYS, LEAST_SAMPLES, LIGHT_PER_M, Learned, Past, WATER_DEMAND_MG_L_DAY, WIND,
-    learn,
+    learn, past,
 };
 pub use mixing::{friction_velocity_m_s, mixing_energy_j, wind_work_j_m2};
 pub use outcome::{

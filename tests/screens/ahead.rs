@@ -34,7 +34,8 @@ pub(crate) fn answer(driver: &mut Driver) {
 
 /// Seasons of two plans and three cases.
 fn invented(question: SeasonQuestion) -> Ahead {
-    let context = Arc::new(question.base.changed(&question.changed).unwrap());
+    let context = question.base.changed(&question.changed).map(Arc::new);
+    let context = context.unwrap_or_else(|_| question.base.clone());
     let asked = &question.asked;
     let strategy = asked.strategy.clone().unwrap_or_else(|| "best".to_owned());
     let plan = asked.plan.clone().unwrap_or_else(|| "early".to_owned());

@@ -98,6 +98,11 @@ impl Driver {
         self.waiting.remove(at)
     }
 
+    /// Whether a question of a lane waits.
+    pub(crate) fn waits(&self, lane: Lane) -> bool {
+        self.waiting.iter().any(|(_, work)| work.lane() == lane)
+    }
+
     /// Answers a question.
     pub(crate) fn answer(&mut self, (generation, work): (u64, Work)) {
         let lane = work.lane();

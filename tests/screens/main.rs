@@ -4,6 +4,7 @@
 
 mod ahead;
 mod arriving;
+mod coming;
 mod downstream;
 mod driver;
 mod held;

@@ -73,13 +73,13 @@ impl Shown {
         format!("{:.1}", value.as_f64().unwrap())
     }
 
-    fn length(&self, value: &Value) -> String {
+    pub(crate) fn length(&self, value: &Value) -> String {
         let m = value.as_f64().unwrap();
         if self.is_us() { format!("{:.1} ft", m / 0.3048) } else { format!("{m:.1} m") }
     }
 
     /// Flows here stay below a thousand, so nothing is grouped.
-    fn flow(&self, value: &Value) -> String {
+    pub(crate) fn flow(&self, value: &Value) -> String {
         let m3s = value.as_f64().unwrap();
         if self.is_us() { format!("{:.0}", m3s / 0.3048_f64.powi(3)) } else { format!("{m3s:.1}") }
     }

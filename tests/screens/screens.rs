@@ -9,6 +9,7 @@ use gatemix::units::System;
 use ratatui::buffer::Buffer;
 use ratatui::style::{Color, Modifier};
 
+use crate::coming;
 use crate::downstream::{self, river};
 use crate::driver::{Driver, text};
 use crate::held::{doc, hold, stop_at, writing};
@@ -138,7 +139,7 @@ fn unchanged_every_screen_is_the_one_in_the_docs() {
     }
     let mut differing = Vec::new();
     let mut names = BTreeSet::from(["README.md".to_owned()]);
-    for scene in scenes().into_iter().chain(downstream::scenes()) {
+    for scene in scenes().into_iter().chain(downstream::scenes()).chain(coming::scenes()) {
         let mut driver = (scene.driver)();
         if scene.name == "ascii" {
             driver.symbols(Symbols::Ascii);
@@ -239,7 +240,7 @@ fn scenario_a_stale_cast_is_told_by_its_word() {
 #[test]
 fn scenario_the_caution_is_on_every_screen_of_every_size() {
     let mut driver = Driver::open(Some(&usual("caution")), NORMAL);
-    for keys in ["1", "2", "3", "4", "4 v", "?", "Esc", ",", "Esc", "2 Enter"] {
+    for keys in ["1", "2", "3", "4", "4 v", "5", "?", "Esc", ",", "Esc", "2 Enter"] {
         driver.resize(NORMAL).keys(keys);
         for size in [NORMAL, WIDE, SMALL, (72, 20), (72, 14), (24, 6)] {
             let shown = driver.resize(size).text();

@@ -1,7 +1,8 @@
 //! The season screen: asked when it is looked at, stopped, asked again; plans, cases and strategies; a date read.
 
+use crossterm::event::{KeyModifiers, MouseButton, MouseEvent, MouseEventKind};
 use gatemix::tui::model::{Cell, SeasonPage, Session};
-use gatemix::tui::{Lane, Symbols};
+use gatemix::tui::{Event, Lane, Symbols};
 
 use crate::ahead::answer;
 use crate::driver::Driver;
@@ -122,8 +123,48 @@ fn scenario_pages_of_the_season() {
     driver.keys("Esc x");
     assert!(driver.text().contains("mg/L") && driver.session().season.oxygen, "{}", driver.text());
     for size in [NORMAL, WIDE, SMALL, (72, 20)] {
-        println!("{}", driver.resize(size).text());
-        println!("{}", driver.keys("x").text());
-        driver.keys("x");
+        let text = driver.resize(size).text();
+        assert!(text.contains("asked 6.0 mg/L at least: inside"), "{text}");
     }
+}
+
+#[test]
+fn law_a_season_of_any_size_is_drawn_within_itself() {
+    let mut driver = opened("season-sizes");
+    for keys in ["5", "x", "t", "g"] {
+        driver.resize(NORMAL).keys(keys);
+        for width in (0..=130).step_by(7) {
+            for height in (0..=40).step_by(3) {
+                let (buffer, cursor) = driver.resize((width, height)).drawn();
+                assert!(cursor.is_none_or(|c| buffer.area.contains(c)), "{width}x{height} {keys}");
+            }
+        }
+    }
+}
+
+#[test]
+fn scenario_the_mouse_reads_a_date() {
+    let mut driver = opened("season-mouse");
+    let press = |column, row| {
+        let kind = MouseEventKind::Down(MouseButton::Left);
+        Event::Mouse(MouseEvent { kind, column, row, modifiers: KeyModifiers::NONE })
+    };
+    driver.send(press(30, 10));
+    let early = driver.session().season.day.unwrap();
+    driver.send(press(40, 10));
+    assert!(driver.session().season.day.unwrap() > early);
+    // beside the pictures there is no date
+    driver.send(press(2, 10));
+    assert!(driver.session().season.day.unwrap() > early);
+}
+
+#[test]
+fn scenario_without_a_plan_the_screen_says_what_to_do() {
+    let mut driver = Driver::open(Some(&usual("season-none")), NORMAL);
+    let text = driver.keys("5").text();
+    assert!(text.contains("No season") && text.contains("plan"), "{text}");
+    for keys in ["c", "p", "s", "Right", "t", "g", "x", ">", "End", "PgDn", "r", "Esc"] {
+        driver.keys(keys);
+    }
+    assert!(driver.text().contains("No season"), "{}", driver.text());
 }

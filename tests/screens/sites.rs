@@ -73,6 +73,17 @@ pub(crate) fn site(name: &str, site: &str, casts: &[(&str, &str)]) -> String {
     name.to_owned()
 }
 
+/// Writes files beside those of a site, by their paths in its folder.
+pub(crate) fn beside(name: &str, files: &[(&str, &str)]) {
+    for (path, text) in files {
+        let path = ground().join(name).join(path);
+        fs::create_dir_all(path.parent().unwrap()).unwrap();
+        if fs::read_to_string(&path).ok().as_deref() != Some(*text) {
+            fs::write(path, text).unwrap();
+        }
+    }
+}
+
 /// The usual one.
 pub(crate) fn usual(name: &str) -> String {
     site(name, SITE, &[("2026-07-13.csv", CAST)])

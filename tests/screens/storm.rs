@@ -11,6 +11,7 @@ use rand_pcg::rand_core::{Rng, SeedableRng};
 use ratatui::buffer::Buffer;
 use ratatui::layout::Rect;
 
+use crate::ahead;
 use crate::driver::{Driver, key};
 use crate::sites::{CAST, SITE, ground, site, usual, with};
 
@@ -108,6 +109,9 @@ fn holds(driver: &Driver) {
             assert!(Screen::ALL.iter().any(|s| s.1 == session.screen));
             let cells = session.mix.cell.row().cells(site);
             assert!(cells.contains(&session.mix.cell), "{:?}", session.mix.cell);
+            let days = session.season_shown().map_or(&[][..], |s| &s.run.run.days);
+            let read = session.season.day;
+            assert!(read.is_none_or(|day| days.is_empty() || days.iter().any(|d| d.date == day)), "{read:?}");
             let mixes = session.ranked.as_ref().map_or(0, |r| r.answer.mixes.len());
             assert!(session.rank.at < mixes.max(1), "{} of {mixes}", session.rank.at);
         }
@@ -164,6 +168,10 @@ fn storm(seed: u64, events: usize) {
             TermEvent::Paste(text) => driver.send(Event::Paste(text)),
             TermEvent::Resize(width, height) => driver.send(Event::Resize(width, height)),
             _ => {}
+        }
+        // seasons are invented: what is tried is what the screen does with them
+        if dice.below(ANSWERED) == 0 && driver.waits(Lane::Ahead) {
+            ahead::answer(&mut driver);
         }
         let lanes =
             [(Lane::Quick, ANSWERED), (Lane::Aside, ANSWERED), (Lane::Down, ANSWERED), (Lane::Long, RANKED)];

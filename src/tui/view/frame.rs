@@ -249,8 +249,8 @@ pub(super) fn status(model: &Model, session: &Session) -> (String, Role) {
         return (format!("ranking {:.0} %{before}, Esc stops", 100.0 * under.done), Role::Warn);
     }
     if let Some(under) = model.ahead.as_ref().filter(|under| is_long(model, under)) {
-        let before = if session.ahead.is_empty() { "" } else { "; what is shown is from before" };
-        let before = if session.screen == Screen::Season { before } else { "" };
+        let old = session.screen == Screen::Season && session.season_shown().is_some_and(|s| s.old);
+        let before = if old { "; what is shown is from before" } else { "" };
         return (format!("season {:.0} %{before}, Esc stops", 100.0 * under.done), Role::Warn);
     }
     let broken = broken_limits(session);

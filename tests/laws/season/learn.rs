@@ -4,9 +4,11 @@ use std::ops::ControlFlow;
 
 use chrono::NaiveDate;
 use gatemix::profile::Profile;
-use gatemix::season::{Forcing, Inflow, Layers, Learned, Past, Sky, WIND, learn};
-use gatemix::site::{Knobs, Site};
+use gatemix::season::{Choosing, Forcing, Inflow, Layers, Learned, Past, Sky, WIND, learn, past};
+use gatemix::site::{Knobs, Site, Strategy};
 use gatemix::units::{System, say::in_system};
+
+use crate::thrift::tiny::{Of, Tiny};
 
 use super::{air, date, go, layers, level, no_inflow, pool};
 
@@ -137,4 +139,33 @@ fn scenario_learning_can_be_stopped() {
     let casts = casts(&days, [truth(); 2], [DAYS, DAYS]);
     let stop = |done: f64| if done > 0.1 { ControlFlow::Break(()) } else { ControlFlow::Continue(()) };
     assert_eq!(learn(&site(Knobs::default()), [&casts[0], &casts[1], &casts[2]], &days, &stop), None);
+}
+
+/// The days of a run, gone through again, lead to the same pool to the last digit: its solids, its shifts and all.
+#[test]
+fn law_the_days_of_a_run_are_those_that_passed() {
+    let season = Tiny::new(Of {
+        gates: 3,
+        on_a_well: true,
+        days: 9,
+        every: 3,
+        thermocline_m: 14.0,
+        warm_c: 20.0,
+        cold_c: 8.0,
+        release_m3s: 1.5,
+        early_high_c: 16.0,
+        late_high_c: 14.0,
+        equilibrium_c: 22.0,
+    });
+    let skies = season.skies(1.5);
+    let setup = season.setup(&skies, Choosing::By(Strategy::Best));
+    let run = season.by(&skies, Strategy::Best);
+    let days = past(&setup, &run);
+    assert_eq!((days.len(), run.days.len()), (9, 9));
+    let mut now = run.start.clone();
+    for (past, day) in days.iter().zip(&run.days) {
+        go(&mut now, &skies.site, past.forcing.sky, past.forcing.inflow, &past.levels);
+        assert_eq!(past.forcing.date, day.date);
+        assert_eq!(now, day.layers);
+    }
 }

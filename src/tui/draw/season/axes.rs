@@ -9,12 +9,12 @@ use unicode_width::UnicodeWidthStr;
 use crate::plot::Scale;
 use crate::tui::draw::pen::Pen;
 use crate::tui::{Look, Role, Symbols};
-use crate::units::{Dimension, System};
+use crate::units::{Dimension, System, Unit};
 
 use super::SeasonPicture;
 
 /// Least and most columns left of the plot, the axis counted in.
-const SIDE: (usize, usize) = (12, 18);
+const SIDE: (usize, usize) = (13, 18);
 /// Least columns and rows there can be a picture in.
 const LEAST: (usize, usize) = (36, 10);
 /// Rows from which every part has its title, and gates rows of their own.
@@ -25,6 +25,9 @@ const GATES: usize = 8;
 pub(super) const BANDS: usize = 6;
 /// Least span of the bands, units shown.
 const LEAST_SPAN: f64 = 1.0;
+/// Values of an axis from which on volumes are counted in thousands.
+const LARGE: f64 = 5000.0;
+const THOUSAND: f64 = 1000.0;
 /// Days of a season so short that weeks are marked instead of months.
 const SHORT: usize = 45;
 /// A threshold this near to an edge of a band, in bands, takes its place.
@@ -174,16 +177,17 @@ pub(super) fn edges(
     edges
 }
 
-/// How a value is counted on an axis and the name of that: volumes in thousands or millions where they are large.
-pub fn counted(dimension: Dimension, system: System, greatest: f64) -> (f64, String) {
+/// How a value is counted on an axis, and the name of that: volumes in what leaves few digits.
+pub(super) fn counted(dimension: Dimension, system: System, greatest: f64) -> (f64, String) {
     let unit = system.unit(dimension);
-    let shown = unit.from_si(greatest).abs();
-    let (times, word) = match dimension {
-        Dimension::Volume if shown >= 2e6 => (1e6, "million "),
-        Dimension::Volume if shown >= 2e3 => (1e3, "thousand "),
-        _ => (1.0, ""),
-    };
-    (times, format!("{word}{}", unit.symbol()))
+    let large = unit.from_si(greatest).abs() >= LARGE;
+    match (dimension, system) {
+        (Dimension::Volume, System::Si) => {
+            (Unit::CubicHectometre.to_si(1.0), Unit::CubicHectometre.symbol().to_owned())
+        }
+        (Dimension::Volume, System::Us) if large => (THOUSAND, format!("{THOUSAND:.0} {}", unit.symbol())),
+        _ => (1.0, unit.symbol().to_owned()),
+    }
 }
 
 /// The scale of values in the unit shown: as narrow as they allow, so that little of the picture is empty.
@@ -244,9 +248,10 @@ mod tests {
 
     #[test]
     fn scenario_volumes_are_counted_in_what_is_read_at_a_glance() {
-        let of = |m3| counted(Dimension::Volume, System::Si, m3);
-        assert_eq!((of(5e7), of(4e4)), ((1e6, "million m3".into()), (1e3, "thousand m3".into())));
-        assert_eq!(of(900.0).0, 1.0);
+        let of = |m3, system| counted(Dimension::Volume, system, m3);
+        assert_eq!(of(5e7, System::Si), (1e6, "hm3".into()));
+        assert_eq!(of(5e7, System::Us), (1e3, "1000 acre-ft".into()));
+        assert_eq!(of(9e5, System::Us), (1.0, "acre-ft".into()));
         assert_eq!(counted(Dimension::Temperature, System::Us, 2e7), (1.0, "F".into()));
     }
 }

@@ -66,16 +66,19 @@ fn side(
     let marks = y.marks(steps(rows));
     let decimals = usize::from(marks.decimals);
     let wide = marks.values.iter().map(|v| format!("{v:.decimals$}").len() + 1).max().unwrap_or(0);
+    let mut numbered = Vec::new();
     for value in marks.values {
         let row = top + rows - 1 - y.cell(value, rows).unwrap_or(0);
         pen.put_before(end, row, &format!("{value:.decimals$} "), Role::Quiet);
         pen.put(end, row, tick, Role::Quiet);
+        numbered.push(row);
     }
     if !frame.titles {
         let room = end.saturating_sub(wide + 1);
         pen.put(0, top, &cut(&curves.name, room), Role::Strong);
-        if rows > 2 {
-            pen.put(0, top + 1, &cut(counted, room), Role::Quiet);
+        // the unit where no number needs the room
+        if let Some(free) = (top + 1..top + rows).find(|row| !numbered.contains(row)) {
+            pen.put(0, free, &cut(counted, end), Role::Quiet);
         }
     }
 }

@@ -17,8 +17,6 @@ use crate::units::{Dimension, System};
 
 use super::pen::Pen;
 
-pub use axes::counted;
-
 /// What the picture shows. Days count from 0.
 #[derive(Debug, Clone, PartialEq)]
 pub struct SeasonPicture {

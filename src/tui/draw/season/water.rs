@@ -222,7 +222,7 @@ fn legend(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, marks: &Marks, 
     // a threshold may not be round
     let edge = |v: f64| if (v - v.round()).abs() < 0.05 { format!("{v:.0}") } else { format!("{v:.1}") };
     let wide = if frame.titles { 2 } else { 1 };
-    let mut col = 0;
+    let (mut col, mut end) = (0, 0);
     for (i, glyph) in marks.fill.iter().enumerate().take(edges.len() + 1) {
         let low = i.checked_sub(1).and_then(|i| edges.get(i));
         let text = match (low, edges.get(i)) {
@@ -234,9 +234,10 @@ fn legend(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, marks: &Marks, 
         pen.put(col, frame.legend, &glyph.repeat(wide), Role::Band(i));
         pen.put(col + wide + 1, frame.legend, &text, Role::Quiet);
         col += text.width() + 2 * wide + 1;
+        end = col - wide;
     }
-    pen.put(col.saturating_sub(1), frame.legend, unit.symbol(), Role::Quiet);
-    col += unit.symbol().width() + 1;
+    pen.put(end + 1, frame.legend, unit.symbol(), Role::Quiet);
+    col = end + unit.symbol().width() + 3;
     if frame.legend > 0 {
         let length = picture.system.unit(Dimension::Length);
         let title = format!("pool, {}", length.symbol());

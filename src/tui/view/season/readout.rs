@@ -6,10 +6,9 @@ use crate::mix::Setting;
 use crate::problem::harmless;
 use crate::report::text::season::outside_by;
 use crate::report::text::season::{exhausted_words, moved_words};
-use crate::report::text::setting_words;
+use crate::report::text::{setting_words, volume};
 use crate::season::{Exhausted, GateMoves, SeasonDay};
 use crate::target::{Mark, Standing, Target};
-use crate::tui::draw::season::counted;
 use crate::tui::look::Role;
 use crate::units::{Dimension, System, figure, in_system, show};
 
@@ -72,11 +71,10 @@ fn of_day(screen: &Screen, (i, day): (usize, &SeasonDay), width: usize, out: &mu
     if let Some(cold) = screen.shown.run.outcome.cold.first()
         && let Some(of) = cold.days.get(i)
     {
-        let (times, unit) = counted(Dimension::Volume, system, of.total_m3);
-        let volume = |m3: f64| format!("{:.1}", system.unit(Dimension::Volume).from_si(m3) / times);
-        let usable =
-            of.usable_m3.map_or_else(|| "none usable".to_owned(), |m3| format!("{} usable", volume(m3)));
-        let words = format!("below {}: {usable} of {} {unit}", c(cold.threshold_c), volume(of.total_m3));
+        let usable = of
+            .usable_m3
+            .map_or_else(|| "none usable".to_owned(), |m3| format!("{} usable", volume(m3, system)));
+        let words = format!("below {}: {usable} of {}", c(cold.threshold_c), volume(of.total_m3, system));
         add(&words, Role::Cold);
     }
     let setting = Setting { gates: day.gates.clone(), ..Setting::default() };
