@@ -11,6 +11,7 @@ use crate::mix::TargetStanding;
 use crate::problem::{Problem, any_refused, harmless};
 use crate::report::{self, json, text};
 use crate::tasks::rank::RankAsked;
+use crate::tasks::season::SeasonAsked;
 use crate::tasks::{self, Asked, Failure};
 use crate::tui;
 use crate::units::System;
@@ -18,6 +19,9 @@ use crate::units::System;
 use super::arguments::{Cli, Command};
 use super::endings::{End, Stop};
 use super::progress::Progress;
+
+/// Share of the progress of a ranking before the seasons of its mixes.
+const RANKING: f64 = 0.2;
 
 /// The answer to a command line, at a moment.
 ///
@@ -57,14 +61,24 @@ pub(super) fn answer(cli: &Cli, clock: DateTime<Utc>, progress: Progress) -> Res
             };
             (shown, strictly(*strict, answer.mix.targets.iter().any(TargetStanding::missed)))
         }
-        Some(Command::Rank { common, asked, strict }) => {
+        Some(Command::Rank { common, asked, season, plan, case, strict }) => {
             let context = tasks::open(&common.asked(), clock)?;
-            let answer = tasks::rank::rank(&context, &asked.asked(), &|done| progress.tell(done))?;
+            // the seasons of the mixes take the larger part
+            let part = if *season { RANKING } else { 1.0 };
+            let answer = tasks::rank::rank(&context, &asked.asked(), &|done| progress.tell(part * done))?;
+            let ahead = SeasonAsked { plan: plan.clone(), case: case.clone(), ..SeasonAsked::default() };
+            let priced = || {
+                tasks::season::prices(&context, &answer, &ahead, &|done| {
+                    progress.tell(RANKING + (1.0 - RANKING) * done)
+                })
+            };
+            let prices = season.then(priced).transpose()?;
             drop(progress);
-            let shown = if common.json {
-                json::rank(&context, &answer)
-            } else {
-                common.color.of(&text::rank(&context, &answer))
+            let shown = match (&prices, common.json) {
+                (None, true) => json::rank(&context, &answer),
+                (Some(prices), true) => json::rank_priced(&context, &answer, prices),
+                (None, false) => common.color.of(&text::rank(&context, &answer)),
+                (Some(prices), false) => common.color.of(&text::rank_priced(&context, &answer, prices)),
             };
             let best = answer.mixes.first();
             let missed = best.is_none_or(|best| best.targets.iter().any(TargetStanding::missed));

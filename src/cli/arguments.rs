@@ -47,6 +47,15 @@ pub(super) enum Command {
         common: Common,
         #[command(flatten)]
         asked: Ranked,
+        /// Price each mix shown by the end of the season, under a plan of the site.
+        #[arg(long)]
+        season: bool,
+        /// Plan of that season; without it the first by file name.
+        #[arg(long, value_name = "FILE|NAME", requires = "season")]
+        plan: Option<String>,
+        /// Case of that season; without it the middle one.
+        #[arg(long, value_name = "NAME", requires = "season")]
+        case: Option<String>,
         /// Exit with 4 when the best mix misses a target, or none is allowed.
         #[arg(long)]
         strict: bool,

@@ -152,6 +152,11 @@ impl Perturbed {
         Self { cases, widening: if profile.large_inversion { 2.0 } else { 1.0 } }
     }
 
+    /// The column of every member, in the order of the members.
+    pub fn columns(&self) -> impl Iterator<Item = &Column> {
+        self.cases.iter().map(|case| &case.1)
+    }
+
     /// The release of a setting in every member; `centre` is the unperturbed release, about which the spread
     /// widens where the profile is doubtful.
     pub fn spread(&self, site: &Site, groups: &[Vec<usize>], setting: &Setting, centre: &Blend) -> Spread {

@@ -1,6 +1,6 @@
 //! Which outlets have water under a pool, and how deep the usable ones reach: what of the cold water can be drawn.
 //!
-//! Methods: `docs/methods.md`, section 2.
+//! Methods: `docs/methods.md`, sections 2 and 8.
 
 use crate::intake;
 use crate::profile::Column;

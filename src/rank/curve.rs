@@ -26,6 +26,26 @@ const HALVINGS: u32 = 10;
 /// Least flow of the table as a share of its greatest (choice); below it the water is that of this flow.
 const LEAST: f64 = 1e-7;
 
+/// How finely curves are cut.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(super) struct Cut {
+    /// How many times the distances above a curve may err.
+    times: f64,
+    first: u32,
+    trickles: i32,
+    halvings: u32,
+    /// Whether it is tried beside half-way too.
+    beside: bool,
+}
+
+impl Cut {
+    /// As mixes are shown.
+    pub(super) const FINE: Self =
+        Self { times: 1.0, first: FIRST, trickles: TRICKLES, halvings: HALVINGS, beside: true };
+    /// To a hundredth of a degree or so, where what is found is computed in full afterwards (choice).
+    pub(super) const ROUGH: Self = Self { times: 20.0, first: 8, trickles: 2, halvings: 4, beside: false };
+}
+
 /// Water of a level at one flow.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Water {
@@ -76,6 +96,17 @@ impl Curve {
         most_m3s: f64,
         cold_c: Option<f64>,
     ) -> Option<Self> {
+        Self::cut(column, (centre_m, opening), most_m3s, cold_c, &Cut::FINE)
+    }
+
+    /// The same cut as finely as is asked.
+    fn cut(
+        column: &Column,
+        (centre_m, opening): (f64, Opening),
+        most_m3s: f64,
+        cold_c: Option<f64>,
+        cut: &Cut,
+    ) -> Option<Self> {
         let solve = |root: f64| {
             let sink = Sink { centre_m, flow_m3s: root * root, opening };
             let zone = zone(column, &sink, 1.0)?;
@@ -90,8 +121,9 @@ impl Curve {
             Some((Knot { root, values, oxygen_known: draw.oxygen_mg_l.is_some() }, zone))
         };
         let top = most_m3s.sqrt();
-        let mut roots: Vec<f64> = (1..=FIRST).map(|i| top * f64::from(i) / f64::from(FIRST)).collect();
-        roots.extend((1..=TRICKLES).map(|i| top / f64::from(FIRST) * 0.5_f64.powi(i)));
+        let mut roots: Vec<f64> =
+            (1..=cut.first).map(|i| top * f64::from(i) / f64::from(cut.first)).collect();
+        roots.extend((1..=cut.trickles).map(|i| top / f64::from(cut.first) * 0.5_f64.powi(i)));
         roots.push(top * LEAST.sqrt());
         let (last, widest) = solve(top)?;
         let meets = [widest.lower, widest.upper].into_iter().filter_map(|side| side.boundary_flow_m3s);
@@ -102,7 +134,7 @@ impl Curve {
         for root in roots {
             let knot = if root.total_cmp(&top).is_eq() { last } else { solve(root)?.0 };
             if let Some(&before) = knots.last() {
-                refine(&|r| solve(r).map(|s| s.0), before, knot, HALVINGS, &mut knots);
+                refine(&|r| solve(r).map(|s| s.0), before, knot, (cut, cut.halvings), &mut knots);
             }
             knots.push(knot);
         }
@@ -162,25 +194,31 @@ impl Curve {
 
 /// Adds knots between two until a straight line between neighbours is near enough half-way and beside it: what bends
 /// evenly about the middle does not show there.
-fn refine(solve: &impl Fn(f64) -> Option<Knot>, a: Knot, b: Knot, halvings: u32, knots: &mut Vec<Knot>) {
+fn refine(
+    solve: &impl Fn(f64) -> Option<Knot>,
+    a: Knot,
+    b: Knot,
+    (cut, halvings): (&Cut, u32),
+    knots: &mut Vec<Knot>,
+) {
     let between = |share: f64| solve(a.root + share * (b.root - a.root));
     let (true, Some(knot)) = (halvings > 0, between(0.5)) else { return };
     let near = |share: f64, knot: Knot| {
         let off = |i: usize| (knot.values[i] - a.values[i] - share * (b.values[i] - a.values[i])).abs();
         let known = [a, knot, b].map(|k| k.oxygen_known);
-        off(0) < APART
-            && off(2) < APART_SHARE
-            && off(3) < APART_SOLIDS * (0.1 + knot.values[3])
-            && off(4) < APART_SOLIDS * (1.0 + knot.values[4])
+        off(0) < cut.times * APART
+            && off(2) < cut.times * APART_SHARE
+            && off(3) < cut.times * APART_SOLIDS * (0.1 + knot.values[3])
+            && off(4) < cut.times * APART_SOLIDS * (1.0 + knot.values[4])
             && known.iter().all(|&k| k == known[0])
-            && (!known[0] || off(1) < APART)
+            && (!known[0] || off(1) < cut.times * APART)
     };
-    if near(0.5, knot) && between(BESIDE).is_none_or(|knot| near(BESIDE, knot)) {
+    if near(0.5, knot) && (!cut.beside || between(BESIDE).is_none_or(|knot| near(BESIDE, knot))) {
         return;
     }
-    refine(solve, a, knot, halvings - 1, knots);
+    refine(solve, a, knot, (cut, halvings - 1), knots);
     knots.push(knot);
-    refine(solve, knot, b, halvings - 1, knots);
+    refine(solve, knot, b, (cut, halvings - 1), knots);
 }
 
 /// Curves of a pool, each sink solved once however many gates share it.
@@ -207,13 +245,10 @@ impl Curves {
     }
 
     /// Solves what was asked for, on all cores.
-    pub fn solve(&mut self, column: &Column, most_m3s: f64, cold_c: Option<f64>) {
+    pub(super) fn solve(&mut self, column: &Column, most_m3s: f64, cold_c: Option<f64>, cut: &Cut) {
         use rayon::prelude::*;
-        self.solved = self
-            .sinks
-            .par_iter()
-            .map(|&(centre_m, opening)| Curve::new(column, centre_m, opening, most_m3s, cold_c))
-            .collect();
+        self.solved =
+            self.sinks.par_iter().map(|&sink| Curve::cut(column, sink, most_m3s, cold_c, cut)).collect();
     }
 
     /// A solved curve; `None` for a sink out of the water.

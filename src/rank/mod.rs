@@ -30,6 +30,7 @@ use crate::withdrawal::{Opening, Sink, zone};
 
 use arrange::ways;
 use choices::{Lanes, Levels, MOST_BLOCKS, Slot};
+use curve::Cut;
 use found::Found;
 use goal::{Efforts, Goal};
 use offers::Offers;
@@ -89,6 +90,19 @@ pub enum Stopped {
 /// # Errors
 /// A site with more mixes than can be judged; a caller who stops it.
 pub fn rank(question: &Question, progress: Progress) -> Result<Ranking, Stopped> {
+    ranked(question, &Cut::FINE, search::LOTS, progress)
+}
+
+/// The same for a caller who computes in full what is found and asks often: the water of a level is read from curves
+/// near to a hundredth of a degree, and one core does it.
+///
+/// # Errors
+/// As [`rank`].
+pub fn rank_roughly(question: &Question, progress: Progress) -> Result<Ranking, Stopped> {
+    ranked(question, &Cut::ROUGH, 1, progress)
+}
+
+fn ranked(question: &Question, cut: &Cut, lots: usize, progress: Progress) -> Result<Ranking, Stopped> {
     let Question { site, profile, .. } = *question;
     let groups = groups(site);
     let units = units::units(site, &groups, profile.pool_m, question.without).map_err(Stopped::Refused)?;
@@ -108,7 +122,7 @@ pub fn rank(question: &Question, progress: Progress) -> Result<Ranking, Stopped>
     let direct = site.outlets.iter().filter(|o| o.well.is_none());
     let leaks: f64 = direct.map(|o| intake::leak_m3s(o, profile.pool_m - o.centre_m, 0.5)).sum();
     let most_m3s = question.blocks.iter().map(|b| b.1).fold(spilt, f64::max) + leaks;
-    curves.solve(&profile.column, most_m3s, site.cold_water_c.first().copied());
+    curves.solve(&profile.column, most_m3s, site.cold_water_c.first().copied(), cut);
     let slots = slots(question, &seats, &curves, most_m3s);
     let weights: Vec<f64> = question.blocks.iter().map(|b| b.0).collect();
     let lanes = Lanes {
@@ -157,6 +171,7 @@ pub fn rank(question: &Question, progress: Progress) -> Result<Ranking, Stopped>
         rules: &rules,
         steps: question.steps,
         ideas,
+        lots,
         progress,
     };
     let hopeless = hopeless(question);

@@ -31,7 +31,7 @@ const COARSE_STEPS: [usize; 1] = [10];
 const WORTH_IT: u64 = 200_000;
 /// The choices of the first part are gone through in this many lots (choice): enough for many cores, few enough that
 /// each can keep its own findings.
-const LOTS: usize = 128;
+pub(super) const LOTS: usize = 128;
 
 /// Told how much is done, 0 to 1, and asked whether to go on.
 pub type Progress<'a> = &'a (dyn Fn(f64) -> ControlFlow<()> + Sync);
@@ -46,6 +46,8 @@ pub(super) struct Task<'a> {
     pub(super) steps: usize,
     /// Number of ideas.
     pub(super) ideas: usize,
+    /// Lots that the choices of the first part are gone through in, side by side.
+    pub(super) lots: usize,
     pub(super) progress: Progress<'a>,
 }
 
@@ -87,7 +89,7 @@ fn walked(task: &Task, to_beat: &Found) -> Option<Found> {
     let lot = |lot: usize| {
         let mut found = to_beat.clone();
         // in turn, so that lots are alike
-        for &(k, choice) in first.iter().skip(lot).step_by(LOTS) {
+        for &(k, choice) in first.iter().skip(lot).step_by(task.lots) {
             if stopped.load(Ordering::Relaxed) {
                 break;
             }
@@ -99,8 +101,10 @@ fn walked(task: &Task, to_beat: &Found) -> Option<Found> {
         }
         found
     };
-    let found =
-        (0..LOTS.min(first.len())).into_par_iter().map(lot).reduce(|| to_beat.clone(), |a, b| a.merge(&b));
+    let found = (0..task.lots.min(first.len()))
+        .into_par_iter()
+        .map(lot)
+        .reduce(|| to_beat.clone(), |a, b| a.merge(&b));
     (!stopped.load(Ordering::Relaxed)).then_some(found)
 }
 

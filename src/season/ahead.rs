@@ -4,8 +4,11 @@
 
 use crate::site::Case;
 
+use super::layers::Layer;
 use super::plan::PlanDay;
 use super::run::Setup;
+use super::skies::Sky;
+use super::step::{Forcing, Inflow};
 
 /// Every day from the first of the season to the last of the plan, the inflow shifted as the case says. Before the
 /// first row its inflow and release hold, and the pool goes straight from `pool_m` to it.
@@ -28,4 +31,17 @@ fn shifted(day: PlanDay, case: &Case) -> PlanDay {
         inflow_c: (day.inflow_c + case.inflow_c).max(0.0),
         ..day
     }
+}
+
+/// What a day brings. Solids of the inflow that the plan does not tell are those of the surface layer.
+pub(super) fn forcing(plan: &PlanDay, sky: Option<Sky>, surface: Option<&Layer>) -> Forcing {
+    let told = |told: Option<f64>, of: fn(&Layer) -> f64| told.or(surface.map(of)).unwrap_or_default();
+    let inflow = Inflow {
+        flow_m3s: plan.inflow_m3s,
+        temperature_c: plan.inflow_c,
+        oxygen_mg_l: plan.inflow_mg_l,
+        salt_g_per_kg: told(plan.inflow_salt_g_per_kg, |l| l.salt_g_per_kg),
+        suspended_mg_l: told(plan.inflow_suspended_mg_l, |l| l.suspended_mg_l),
+    };
+    Forcing { date: plan.date, sky, inflow }
 }

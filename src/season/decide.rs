@@ -4,10 +4,12 @@
 
 use chrono::NaiveDate;
 
-use crate::mix::limits::{self, Before, Check, Move, Moves};
+use crate::mix::limits::{self, Before, Check, Move, Moves, Rule};
 use crate::mix::{Asked, Day, Drawn, Setting, checks};
 use crate::profile::Profile;
-use crate::rank::{Criterion, Full, Order, Progress, Question, Ranked, Ranking, Stopped, rank};
+use crate::rank::{
+    Criterion, Extreme, Full, Order, Progress, Question, Ranked, Ranking, Stopped, rank_roughly,
+};
 use crate::site::{Outlet, SAME_OPENING, Site};
 
 use super::refine::refined;
@@ -52,7 +54,7 @@ pub struct Decision {
     pub crew_hours: f64,
     /// Longest notice that a move needs, days.
     pub lead_days: f64,
-    /// Coldest and warmest release that an allowed mix gives, C.
+    /// Coldest and warmest release that an allowed mix gives, however many days the change to it takes, C.
     pub attainable_c: Option<[f64; 2]>,
     /// Limits of the change that it breaks, since no mix keeps them.
     pub past: Vec<Check>,
@@ -91,6 +93,15 @@ pub(super) struct Chosen {
     pub(super) past: Vec<Check>,
 }
 
+/// What could be set, ranked.
+struct Ways {
+    ranking: Ranking,
+    /// Whether the limits of the change are let go, since no mix keeps them.
+    is_free: bool,
+    /// Coldest and warmest mix, those limits let go.
+    reach: Option<[Extreme; 2]>,
+}
+
 /// Why there is no mix.
 #[derive(Debug, Clone, PartialEq)]
 pub(super) enum NoMix {
@@ -116,64 +127,68 @@ impl Choice<'_> {
     /// The best mix of the day: of the first mixes of the ranking that keep every limit in full, each refined, the one
     /// that comes first in the order, then the nearer to what is wanted.
     pub(super) fn best(&self, progress: Progress) -> Result<Chosen, NoMix> {
-        let (ranking, is_free) = self.ranked(progress)?;
+        let ways = self.ranked(progress)?;
+        let Ways { ranking, is_free, .. } = &ways;
         let order = Order::of(&self.question(self.site));
         let kept = ranking.ideas(TRIED).into_iter().filter_map(|idea| {
             let plain = self.tried(idea.best.asked.first()?, &order)?;
-            plain.keeps(is_free).then_some(plain)
+            plain.keeps(*is_free).then_some(plain)
         });
         let mut found: Vec<Tried> = Vec::new();
         for plain in kept.take(REFINED) {
-            let better = refined(self, &plain, &order).filter(|tried| tried.keeps(is_free));
+            let better = refined(self, &plain, &order).filter(|tried| tried.keeps(*is_free));
             found.push(plain);
             found.extend(better);
         }
         let first = found.into_iter().reduce(|best, other| if other.before(&best) { other } else { best });
-        first.map_or_else(|| Err(none_allowed(self.site, &ranking)), |best| Ok(self.chosen(best, &ranking)))
+        first.map_or_else(|| Err(none_allowed(self.site, ranking)), |best| Ok(self.chosen(best, &ways)))
     }
 
     /// Every mix allowed at splits of a tenth, where each set of open outlets allows no more than one and they are no
     /// more than `most`: then each is worth following for itself.
     pub(super) fn every(&self, most: usize, progress: Progress) -> Result<Option<Vec<Chosen>>, NoMix> {
-        let (ranking, is_free) = self.ranked(progress)?;
+        let ways = self.ranked(progress)?;
+        let Ways { ranking, is_free, .. } = &ways;
         if ranking.allowed != ranking.mixes.len() as u64 || ranking.mixes.len() > most {
             return Ok(None);
         }
         let order = Order::of(&self.question(self.site));
         let tried = ranking.mixes.iter().filter_map(|mix| self.tried(mix.asked.first()?, &order));
-        let all: Vec<Chosen> = tried.filter(|t| t.keeps(is_free)).map(|t| self.chosen(t, &ranking)).collect();
-        if all.is_empty() { Err(none_allowed(self.site, &ranking)) } else { Ok(Some(all)) }
+        let all: Vec<Chosen> = tried.filter(|t| t.keeps(*is_free)).map(|t| self.chosen(t, &ways)).collect();
+        if all.is_empty() { Err(none_allowed(self.site, ranking)) } else { Ok(Some(all)) }
     }
 
     /// What is set whatever the ranking says, with what could be reached instead.
     pub(super) fn given(&self, asked: Asked, progress: Progress) -> Result<Chosen, NoMix> {
-        let (ranking, _) = self.ranked(progress)?;
+        let ways = self.ranked(progress)?;
         let order = Order::of(&self.question(self.site));
         let tried = self.tried(&asked, &order);
-        tried.map(|tried| self.chosen(tried, &ranking)).ok_or_else(|| none_allowed(self.site, &ranking))
+        tried.map(|tried| self.chosen(tried, &ways)).ok_or_else(|| none_allowed(self.site, &ways.ranking))
     }
 
-    /// The ranking, and whether it is one without the limits of the change since no mix keeps them. Gates stand shut,
-    /// as they stand, or as wide as they go; where that allows no mix, in any of their positions.
-    fn ranked(&self, progress: Progress) -> Result<(Ranking, bool), NoMix> {
+    /// What could be set, ranked. Gates stand shut, as they stand, or as wide as they go; where that allows no mix, in any
+    /// of their positions.
+    fn ranked(&self, progress: Progress) -> Result<Ways, NoMix> {
         let ranked = |site: &Site| {
-            rank(&self.question(site), progress).map_err(|stopped| match stopped {
+            rank_roughly(&self.question(site), progress).map_err(|stopped| match stopped {
                 Stopped::Cancelled => NoMix::Cancelled,
                 Stopped::Refused(problem) => NoMix::Allowed(None, problem.words),
             })
         };
-        if let Some(coarse) = with_fewer_positions(self.site, self.now) {
-            let ranking = ranked(&coarse)?;
-            if !ranking.mixes.is_empty() {
-                return Ok((ranking, false));
+        let coarse = with_fewer_positions(self.site, self.now);
+        for site in coarse.iter().chain([self.site]) {
+            let ranking = ranked(site)?;
+            if ranking.mixes.is_empty() {
+                continue;
             }
+            // what the limits of the change keep from one day can be reached in several
+            let is_narrowed = ranking.rejected.iter().any(|r| is_of_change(r.check.rule));
+            let free = if is_narrowed { Some(ranked(&without_change(site))?) } else { None };
+            let reach = free.unwrap_or_else(|| ranking.clone()).attainable_c;
+            return Ok(Ways { ranking, is_free: false, reach });
         }
-        let ranking = ranked(self.site)?;
-        if ranking.mixes.is_empty() {
-            Ok((ranked(&without_change(self.site))?, true))
-        } else {
-            Ok((ranking, false))
-        }
+        let ranking = ranked(&without_change(self.site))?;
+        Ok(Ways { reach: ranking.attainable_c.clone(), ranking, is_free: true })
     }
 
     fn question<'b>(&'b self, site: &'b Site) -> Question<'b> {
@@ -221,14 +236,14 @@ impl Choice<'_> {
         })
     }
 
-    fn extremes_c(&self, ranking: &Ranking) -> Option<[f64; 2]> {
+    fn extremes_c(&self, reach: Option<&[Extreme; 2]>) -> Option<[f64; 2]> {
         let in_full = |mix: &Ranked| Some(self.flowing(mix.asked.first()?)?.release.temperature_c);
-        let [coldest, warmest] = ranking.attainable_c.as_ref()?.each_ref().map(|e| in_full(&e.mix));
+        let [coldest, warmest] = reach?.each_ref().map(|e| in_full(&e.mix));
         Some([coldest?, warmest?])
     }
 
-    fn chosen(&self, tried: Tried, ranking: &Ranking) -> Chosen {
-        let extremes = self.extremes_c(ranking);
+    fn chosen(&self, tried: Tried, ways: &Ways) -> Chosen {
+        let extremes = self.extremes_c(ways.reach.as_ref());
         // what is chosen is attainable: it may lie a hair beyond what splits of a tenth give
         let attainable_c =
             extremes.map(|[low, high]| [low.min(tried.temperature_c), high.max(tried.temperature_c)]);
@@ -269,6 +284,20 @@ fn with_fewer_positions(site: &Site, now: Option<&Setting>) -> Option<Site> {
     }
     let positions = |site: &Site| site.outlets.iter().map(|o| o.positions.len()).sum::<usize>();
     (positions(&coarse) < positions(site)).then_some(coarse)
+}
+
+/// Whether a limit is one of the change, which [`without_change`] lets go.
+fn is_of_change(rule: Rule) -> bool {
+    matches!(
+        rule,
+        Rule::MaxMoves
+            | Rule::MaxCrewHours
+            | Rule::FlowChangePerHour
+            | Rule::FlowChangePerDay
+            | Rule::TemperatureChangePerHour
+            | Rule::TemperatureChangePerDay
+            | Rule::MovesUnderFlow
+    )
 }
 
 /// The site without its limits of a change: moves, crew hours, rates, gates not to be moved under flow.

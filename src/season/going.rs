@@ -14,14 +14,14 @@ use crate::river::{self, Figures};
 use crate::site::Site;
 use crate::target::DAM;
 
-use super::ahead::ahead;
+use super::ahead::{ahead, forcing};
 use super::aims::asking;
 use super::decide::{Choice, Chosen, Decision, NoMix, Why};
 use super::layers::Layers;
 use super::plan::PlanDay;
 use super::run::{Ended, Run, SeasonDay, Setup};
 use super::set::{Flowing, flowing};
-use super::step::{Forcing, Inflow, day};
+use super::step::day;
 use super::strategy::{Wants, is_due, name, wants};
 
 /// Length of the day, s; exact.
@@ -264,24 +264,8 @@ impl<'a> Going<'a> {
         let Some((flowing, _)) = held else {
             return self.end(date, "what is set gives no water".into(), None);
         };
-        let surface = self.layers.layers.last();
-        let forcing = Forcing {
-            date,
-            sky: self.setup.skies.days.get(&date).copied(),
-            inflow: Inflow {
-                flow_m3s: plan.inflow_m3s,
-                temperature_c: plan.inflow_c,
-                oxygen_mg_l: plan.inflow_mg_l,
-                salt_g_per_kg: plan
-                    .inflow_salt_g_per_kg
-                    .or(surface.map(|l| l.salt_g_per_kg))
-                    .unwrap_or_default(),
-                suspended_mg_l: plan
-                    .inflow_suspended_mg_l
-                    .or(surface.map(|l| l.suspended_mg_l))
-                    .unwrap_or_default(),
-            },
-        };
+        let sky = self.setup.skies.days.get(&date).copied();
+        let forcing = forcing(&plan, sky, self.layers.layers.last());
         let levels = |_: &Column, _: f64| flowing.drawn.iter().map(|d| d.level.clone()).collect();
         let stepped = match day(&mut self.layers, &self.site, &forcing, &levels) {
             Ok(stepped) => stepped,

@@ -15,7 +15,10 @@ use crate::rank::Progress;
 use crate::site::{Knobs, Site};
 use crate::units::say;
 
+use super::ahead::{ahead, forcing};
 use super::layers::Layers;
+use super::plan::PlanDay;
+use super::run::{Run, SeasonDay, Setup};
 use super::step::{Forcing, day};
 
 /// Casts nearer than this tell too little of what lies between them, days (choice).
@@ -49,6 +52,17 @@ pub struct Past {
     pub forcing: Forcing,
     /// What was drawn.
     pub levels: Vec<Level>,
+}
+
+/// The days of a run, as they passed: for a plan and a gate schedule that tell what has been.
+pub fn past(setup: &Setup, run: &Run) -> Vec<Past> {
+    let days = ahead(setup, run.start.pool_m(&setup.skies.site.pool));
+    let mornings = std::iter::once(&run.start).chain(run.days.iter().map(|day| &day.layers));
+    let one = |((plan, day), morning): ((&PlanDay, &SeasonDay), &Layers)| Past {
+        forcing: forcing(plan, setup.skies.days.get(&plan.date).copied(), morning.layers.last()),
+        levels: day.drawn.iter().map(|drawn| drawn.level.clone()).collect(),
+    };
+    days.iter().zip(&run.days).zip(mornings).map(one).collect()
 }
 
 /// How far a computed pool is from a cast, as the root of the mean square over its samples.

@@ -192,8 +192,10 @@ pub struct Outcome {
     pub reserves: Vec<(ColdWater, Exhausted)>,
     /// What was left on the first of every month.
     pub left: Vec<Left>,
-    /// First day from which no allowed mix reaches the high of the target at the required release.
+    /// First day of decision on which no allowed mix reaches the high of the target at the required release.
     pub exhausted: Exhausted,
+    /// First day of decision after it on which one does again.
+    pub exhausted_until: Option<NaiveDate>,
     /// First day under a reserve of the site; `None` where it has none.
     pub under_reserve: Option<Exhausted>,
     /// What is within reach on the days of decision.
@@ -246,6 +248,7 @@ pub fn outcome(setup: &Setup, run: &Run) -> Outcome {
         })
         .collect();
     let reached = reached::reached(setup, site, run);
+    let (exhausted, exhausted_until) = reached::exhausted(&reached, run);
     let targets = tallies(site, &setup.skies.conditions, days);
     let cold: Vec<ColdWater> = site.cold_water_c.iter().map(|&c| colder(c)).collect();
     let largest = |of: fn(&SeasonDay) -> f64| days.iter().map(of).fold(0.0, f64::max);
@@ -254,7 +257,8 @@ pub fn outcome(setup: &Setup, run: &Run) -> Outcome {
         cold,
         under_reserve: first(&reserves.iter().map(|r| &r.1).collect::<Vec<_>>()),
         reserves,
-        exhausted: reached::exhausted(site, &reached, run),
+        exhausted,
+        exhausted_until,
         reached,
         gates: gates::lives(site, days),
         calendar: gates::moves(site, run),
@@ -277,7 +281,7 @@ pub fn outcome(setup: &Setup, run: &Run) -> Outcome {
 }
 
 /// The site of a season: under the air of its case, with the outages of its plan.
-fn season_site(setup: &Setup) -> Site {
+pub(super) fn season_site(setup: &Setup) -> Site {
     let mut site = Site::clone(&setup.skies.site);
     site.limits.outages.extend(setup.plan.outages.iter().cloned());
     site

@@ -1,4 +1,4 @@
-//! What the allowed mixes reach on the days of decisions against what the rules at the dam ask, and the day from which
+//! What the allowed mixes reach on the days of decisions against what the rules at the dam ask, and the day on which
 //! none reaches it any more.
 //!
 //! Methods: `docs/methods.md`, section 8.
@@ -44,45 +44,31 @@ fn asks(setup: &Setup, site: &Site, date: NaiveDate) -> Vec<Asks> {
     day.rules(site).iter().filter_map(of_dam).collect()
 }
 
-/// First day of decision from which, to the end of the season or of the rule, no allowed mix comes down to the high
-/// of a hard rule at the dam: the earliest of all rules.
-pub(super) fn exhausted(site: &Site, reached: &[Reached], run: &Run) -> Exhausted {
+/// First day of decision on which no allowed mix comes down to the high of a hard rule at the dam, and the first after
+/// it on which one does again; autumn cools what summer spent, so the second may come.
+pub(super) fn exhausted(reached: &[Reached], run: &Run) -> (Exhausted, Option<NaiveDate>) {
     let Some(end) = run.days.last().map(|day| day.date) else {
-        return Exhausted::Unknown("the season has no day".to_owned());
+        return (Exhausted::Unknown("the season has no day".to_owned()), None);
     };
-    let ends: Vec<Reach> = (0..site.targets.len()).map(|rule| of_rule(reached, rule)).collect();
-    let since =
-        ends.iter().filter_map(|end| if let Reach::OutSince(date) = end { Some(*date) } else { None });
-    match (since.min(), &run.ended) {
-        (Some(on), _) => Exhausted::On(on),
-        (None, Some(ended)) => Exhausted::Unknown(format!("the season stops on {}", ended.date)),
-        (None, None) if ends.iter().all(|end| *end == Reach::Untold) => {
-            let words = "no hard rule at the dam bounds the temperature from above on a day of decision";
-            Exhausted::Unknown(words.to_owned())
+    let told: Vec<(NaiveDate, bool)> =
+        reached.iter().filter_map(|one| Some((one.date, out_of_reach(one)?))).collect();
+    let first = told.iter().position(|(_, out)| *out);
+    match (first, &run.ended) {
+        (Some(first), _) => {
+            let again = told[first..].iter().find(|(_, out)| !out).map(|(date, _)| *date);
+            (Exhausted::On(told[first].0), again)
         }
-        (None, None) => Exhausted::NotBy(end),
+        (None, Some(ended)) => (Exhausted::Unknown(format!("the season stops on {}", ended.date)), None),
+        (None, None) if told.is_empty() => {
+            let words = "no hard rule at the dam bounds the temperature from above on a day of decision";
+            (Exhausted::Unknown(words.to_owned()), None)
+        }
+        (None, None) => (Exhausted::NotBy(end), None),
     }
 }
 
-/// How a rule's high ends in the season.
-#[derive(Debug, Clone, Copy, PartialEq)]
-enum Reach {
-    /// No decision tells.
-    Untold,
-    /// On its last day of decision a mix comes down to it.
-    Kept,
-    /// From this day of decision on none does, to its end.
-    OutSince(NaiveDate),
-}
-
-fn of_rule(reached: &[Reached], rule: usize) -> Reach {
-    let told = reached.iter().filter_map(|one| {
-        let high_c = one.asks.iter().find(|a| a.target == rule)?.high_c?;
-        Some((one.date, one.attainable_c?[0] > high_c + SAME_C))
-    });
-    told.fold(Reach::Untold, |before, (date, out)| match (out, before) {
-        (false, _) => Reach::Kept,
-        (true, Reach::OutSince(_)) => before,
-        (true, _) => Reach::OutSince(date),
-    })
+/// Whether the coldest mix of a day of decision is too warm for a hard rule; `None` where no rule or no range tells.
+fn out_of_reach(one: &Reached) -> Option<bool> {
+    let high_c = one.asks.iter().filter_map(|asks| asks.high_c).reduce(f64::min)?;
+    Some(one.attainable_c?[0] > high_c + SAME_C)
 }

@@ -9,10 +9,12 @@ use crate::rank::Order;
 
 use super::decide::{Choice, STEPS, Tried};
 
-/// A split is drawn in so often, each time to 0.62 of what is left (choice: a fifth of the release to a thousandth).
-const DRAWN_IN: usize = 11;
 /// The golden section: 2 over 1 + root of 5 (derived).
 const GOLDEN: f64 = 0.618_033_988_749_895;
+/// Sections until the wanted temperature is known to a millionth of what is sought through (choice).
+const SECTIONS: usize = 30;
+/// Most splits tried between the first two (choice): a release is nearly straight in its split.
+const SPLITS: usize = 6;
 /// A mix nearer to what is wanted is not refined, C (choice: a tenth of what is shown).
 const NEAR_C: f64 = 0.01;
 /// The split keeps within this share of one step (choice): the neighbours are mixes of the ranking themselves.
@@ -20,35 +22,55 @@ const WITHIN: f64 = 0.99;
 
 /// A mix with the split of its two largest parts drawn in to where it comes nearest to what is wanted, everything else
 /// kept, within a step of the ranking. `None` where there is nothing to gain: one part, or already near.
+///
+/// The temperature that comes nearest is sought first, which takes no water; then the split that gives it, by secants
+/// that keep it between (false position, the end that stays halved: after the Illinois form, recalled).
 pub(super) fn refined(choice: &Choice, plain: &Tried, order: &Order) -> Option<Tried> {
     let (between, [a, b]) = largest(choice, &plain.asked)?;
-    let asked = |first_m3s: f64| plain.asked.with(between, [first_m3s, a + b - first_m3s]);
-    let off_c = |first_m3s: f64| {
-        let water = choice.flowing(&asked(first_m3s));
-        water.map_or((f64::INFINITY, f64::INFINITY), |w| order.off_c(w.release.temperature_c))
-    };
     let before = order.off_c(plain.temperature_c);
     if before.0 + before.1 < NEAR_C {
         return None;
     }
+    let asked = |first_m3s: f64| plain.asked.with(between, [first_m3s, a + b - first_m3s]);
+    let release_c = |first_m3s: f64| Some(choice.flowing(&asked(first_m3s))?.release.temperature_c);
     let step = WITHIN * choice.blocks[0].1 / STEPS as f64;
     let (mut low, mut high) = ((a - step).max((1.0 - WITHIN) * a), (a + step).min(a + WITHIN * b));
-    let inner = |low: f64, high: f64, share: f64| low + share * (high - low);
-    let (mut x, mut y) = (inner(low, high, 1.0 - GOLDEN), inner(low, high, GOLDEN));
-    let (mut at_x, mut at_y) = (off_c(x), off_c(y));
-    for _ in 0..DRAWN_IN {
-        if at_x <= at_y {
-            (high, y, at_y) = (y, x, at_x);
-            x = inner(low, high, 1.0 - GOLDEN);
-            at_x = off_c(x);
+    let (at_low, at_high) = (release_c(low)?, release_c(high)?);
+    let wanted_c = nearest_c(order, at_low.min(at_high), at_low.max(at_high));
+    let (mut off_low, mut off_high) = (at_low - wanted_c, at_high - wanted_c);
+    let mut best = if off_low.abs() < off_high.abs() { (low, off_low) } else { (high, off_high) };
+    for _ in 0..SPLITS {
+        if best.1.abs() < 0.5 * NEAR_C || off_low * off_high >= 0.0 {
+            break;
+        }
+        let first_m3s = (low * off_high - high * off_low) / (off_high - off_low);
+        let off = release_c(first_m3s)? - wanted_c;
+        if off.abs() < best.1.abs() {
+            best = (first_m3s, off);
+        }
+        // the end that stays counts half, so that it does not stay for good
+        if off * off_high > 0.0 {
+            (high, off_high, off_low) = (first_m3s, off, 0.5 * off_low);
         } else {
-            (low, x, at_x) = (x, y, at_y);
-            y = inner(low, high, GOLDEN);
-            at_y = off_c(y);
+            (low, off_low, off_high) = (first_m3s, off, 0.5 * off_high);
         }
     }
-    let (at, first_m3s) = if at_x <= at_y { (at_x, x) } else { (at_y, y) };
-    if at < before { choice.tried(&asked(first_m3s), order) } else { None }
+    if order.off_c(wanted_c + best.1) < before { choice.tried(&asked(best.0), order) } else { None }
+}
+
+/// The temperature between two that lies least outside, and then nearest to what is preferred, C: both grow away from
+/// it.
+fn nearest_c(order: &Order, mut low: f64, mut high: f64) -> f64 {
+    let inner = |low: f64, high: f64, share: f64| low + share * (high - low);
+    for _ in 0..SECTIONS {
+        let (x, y) = (inner(low, high, 1.0 - GOLDEN), inner(low, high, GOLDEN));
+        if order.off_c(x) <= order.off_c(y) {
+            high = y;
+        } else {
+            low = x;
+        }
+    }
+    inner(low, high, 0.5)
 }
 
 /// The two largest parts that can be varied, with their flows, m3/s.

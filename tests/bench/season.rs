@@ -1,7 +1,8 @@
 //! A season: how long it takes, how that grows, and how far its release depends on the cut of layers and days.
 //!
-//! `cargo bench --bench season` prints the figures and fails when one of them breaks its bound. The dam is the first
-//! demonstration site; plan and weather are invented here.
+//! `cargo bench --bench season` prints the figures and fails when one of them breaks its bound; `-- strategies` runs the
+//! site's own first plan by every strategy, `-- convergence` only cuts layers. The dam is the first demonstration site;
+//! plan and weather are invented here.
 
 #![expect(clippy::print_stdout, reason = "the figures are the product")]
 
@@ -13,7 +14,7 @@ use std::time::Instant;
 
 use chrono::{DateTime, Datelike, Days, NaiveDate};
 use gatemix::mix::Setting;
-use gatemix::season::{Choosing, Plan, PlanDay, Run, Score, Setup, Skies, run};
+use gatemix::season::{Choosing, Plan, PlanDay, Run, Score, Setup, Skies, outcome, run};
 use gatemix::site::{Case, Strategy};
 use gatemix::tasks::{Asked, Context, now_setting, open};
 use gatemix::weather::{Air, Weather};
@@ -74,8 +75,8 @@ impl Bench {
         Skies::of_case(self.context.site(), &self.context.conditions, &case, self.begins, last).ok()
     }
 
-    fn season(&self, plan: &Plan, skies: &Skies, strategy: Strategy) -> Option<(Score, Run)> {
-        let setup = Setup {
+    fn setup<'a>(&'a self, plan: &'a Plan, skies: &'a Skies, strategy: Strategy) -> Setup<'a> {
+        Setup {
             start: &self.context.profile,
             begins: self.begins,
             decides: self.begins,
@@ -84,7 +85,11 @@ impl Bench {
             skies,
             choosing: Choosing::By(strategy),
             decide_days: EVERY,
-        };
+        }
+    }
+
+    fn season(&self, plan: &Plan, skies: &Skies, strategy: Strategy) -> Option<(Score, Run)> {
+        let setup = self.setup(plan, skies, strategy);
         let run = run(&setup, &|_| ControlFlow::Continue(()))?;
         Some((Score::of(&setup, &run), run))
     }
@@ -208,7 +213,36 @@ fn convergence() -> Option<()> {
     Some(())
 }
 
+/// The site's own first plan in its own first case, by every strategy: how long, and what comes of it.
+fn strategies() -> Option<()> {
+    let bench = Bench::open()?;
+    let plan = bench.context.folder.plans().iter().find_map(|listed| listed.plan.clone())?;
+    let site = bench.context.site();
+    for case in &site.season.cases {
+        let last = plan.days.last()?.date;
+        let skies = Skies::of_case(site, &bench.context.conditions, case, bench.begins, last).ok()?;
+        for strategy in [Strategy::Hold, Strategy::Best, Strategy::Thrift] {
+            let start = Instant::now();
+            let (score, run) = bench.season(&plan, &skies, strategy)?;
+            let took_s = start.elapsed().as_secs_f64();
+            let setup = bench.setup(&plan, &skies, strategy);
+            let out = outcome(&setup, &run);
+            println!(
+                "{}, {}: {took_s:.2} s; {score:?}; exhausted {:?}; reserve {:?}; ended {:?}; aims {:?}",
+                case.name, run.strategy, out.exhausted, out.under_reserve, run.ended, run.aims
+            );
+        }
+    }
+    Some(())
+}
+
 fn main() -> ExitCode {
+    if std::env::args().any(|word| word == "strategies") {
+        return strategies().map_or(ExitCode::FAILURE, |()| ExitCode::SUCCESS);
+    }
+    if std::env::args().any(|word| word == "convergence") {
+        return convergence().map_or(ExitCode::FAILURE, |()| ExitCode::SUCCESS);
+    }
     let kept = seasons();
     let _ = convergence();
     match kept {

@@ -312,3 +312,39 @@ fn scenario_a_schedule_is_followed_and_a_miss_is_told_by_the_exit_code() {
     let arguments = ["season", folder.named(), "--on", "2025-07-14T10:30", "--strict", "--schedule"];
     assert_eq!(run(&[&arguments[..], &[file.to_str().unwrap()]].concat()).code, Some(4));
 }
+
+#[test]
+fn scenario_the_mixes_of_a_ranking_are_priced_against_what_is_set_now() {
+    let folder = usual();
+    let arguments =
+        ["rank", folder.named(), "--on", "2025-07-14T10:30", "--release", "30", "--season", "--case", "warm"];
+    let answer = run(&[&arguments[..], &["--json"]].concat()).json();
+    let season = &answer["season"];
+    assert_eq!(
+        (&season["plan"], &season["case"], &season["against"]),
+        (&"steady".into(), &"warm".into(), &"now".into())
+    );
+    assert_eq!((&season["held_until"], &season["members"]), (&"2025-07-28".into(), &5.into()));
+    let priced = list(&season["mixes"]);
+    assert_eq!(priced.len(), list(&answer["mixes"]).len());
+    for price in priced {
+        let change = &price["days_outside_more"];
+        let [low, high] = [0, 1].map(|i| change["range"][i].as_i64().unwrap());
+        let days = change["days"].as_i64().unwrap();
+        assert!(low <= days && days <= high, "{change}");
+        assert_eq!(change["told"], low > 0 || high < 0);
+    }
+    // everything else stands as without prices, but for the inputs
+    let mut plain =
+        run(&["rank", folder.named(), "--on", "2025-07-14T10:30", "--release", "30", "--json"]).json();
+    let mut priced = answer.clone();
+    priced.as_object_mut().unwrap().remove("season");
+    for answer in [&mut plain, &mut priced] {
+        answer.as_object_mut().unwrap().remove("fingerprint");
+    }
+    assert_eq!(plain, priced);
+    let text = told(&arguments);
+    assert!(text.contains("each mix held until 2025-07-28") && text.contains("days outside: "), "{text}");
+    // a plan is of no use without the season
+    run(&["rank", folder.named(), "--plan", "steady"]).failed_with(2);
+}

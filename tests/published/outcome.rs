@@ -218,19 +218,20 @@ fn scenario_a_reserve_counts_from_its_day_on() {
 }
 
 #[test]
-fn scenario_it_runs_out_where_no_mix_comes_down_to_the_high_up_to_the_end_of_the_rule() {
+fn scenario_it_runs_out_on_the_first_day_no_mix_comes_down_to_the_high() {
     let site = checked(SITE);
     let on = |coldest: [f64; 5]| {
-        let decisions =
-            coldest.iter().enumerate().map(|(i, c)| decision(7 * i as u64, Some([*c, 20.0]))).collect();
-        of(&site, days(30), decisions, Vec::new()).exhausted
+        let told = coldest.iter().enumerate();
+        let decisions = told.map(|(i, c)| decision(7 * i as u64, Some([*c, 20.0]))).collect();
+        let out = of(&site, days(30), decisions, Vec::new());
+        (out.exhausted, out.exhausted_until)
     };
+    let from = |from: &str, until: Option<&str>| (Exhausted::On(date(from)), until.map(date));
     // 1, 8 and 15 August are the summer rule's (high 12), 22 and 29 the autumn rule's (high 10)
-    assert_eq!(on([8.0, 8.0, 8.0, 8.0, 8.0]), Exhausted::NotBy(date("2026-08-30")));
-    assert_eq!(on([8.0, 8.0, 8.0, 10.0, 10.5]), Exhausted::On(date("2026-08-29")));
-    assert_eq!(on([8.0, 8.0, 8.0, 11.0, 10.0]), Exhausted::NotBy(date("2026-08-30")), "it came back");
-    assert_eq!(on([12.5, 12.5, 12.5, 9.0, 9.0]), Exhausted::On(date("2026-08-01")), "to the end of its rule");
-    assert_eq!(on([12.5, 12.5, 11.0, 9.0, 9.0]), Exhausted::NotBy(date("2026-08-30")));
+    assert_eq!(on([12.0, 8.0, 8.0, 10.0, 8.0]), (Exhausted::NotBy(date("2026-08-30")), None));
+    assert_eq!(on([8.0, 8.0, 8.0, 10.0, 10.5]), from("2026-08-29", None));
+    assert_eq!(on([8.0, 8.0, 8.0, 11.0, 10.0]), from("2026-08-22", Some("2026-08-29")));
+    assert_eq!(on([12.5, 12.5, 12.5, 10.5, 9.0]), from("2026-08-01", Some("2026-08-29")));
     let out = of(&site, days(3), vec![decision(0, Some([13.0, 20.0]))], Vec::new());
     assert_eq!(out.reached[0].range_c(), (Some(8.0), Some(12.0)), "a wish bounds nothing");
     assert_abs_diff_eq!(out.reached[0].by_c().unwrap(), 1.0, epsilon = 1e-12);

@@ -32,7 +32,7 @@ use super::sentence::{METHOD, caution};
 
 use targets::{conflicts, points, targets};
 
-pub use rank::rank;
+pub use rank::{rank, rank_priced};
 pub use river::river;
 pub use season::season;
 

@@ -3,15 +3,17 @@
 use crate::mix::limits::{Check, Group, Of, Rule};
 use crate::mix::{Gate, Setting};
 use crate::rank::{Criterion, Rejected};
+use crate::season::{Change, Price};
 use crate::site::Site;
 use crate::tasks::Context;
 use crate::tasks::rank::{Lost, Part, PreferredSplit, RankAnswer, Shown, ShownPart, Unsure};
+use crate::tasks::season::Prices;
 use crate::units::{System, in_system};
 
 use super::rank_shape::{
-    AskedJson, BinsJson, BlockAskedJson, BlockJson, LeastJson, LostJson, MixedJson, NearestJson,
-    NothingFitsJson, PocketJson, RankJson, RankedJson, RejectedJson, RootJson, SplitJson, UnsureJson,
-    WholeDayJson,
+    AskedJson, BinsJson, BlockAskedJson, BlockJson, ChangeJson, LeastJson, LostJson, MixedJson, NearestJson,
+    NothingFitsJson, PocketJson, PriceJson, PricedJson, PricesJson, RankJson, RankedJson, RejectedJson,
+    RootJson, SplitJson, UnsureJson, WholeDayJson,
 };
 use super::shape::SettingJson;
 use super::targets::{conflicts, points, targets};
@@ -20,10 +22,32 @@ use crate::report::sentence::{caution, unsure_words};
 
 /// The answer of `rank`.
 pub fn rank(context: &Context, answer: &RankAnswer) -> String {
+    written(&shape(context, answer, &context.fingerprint))
+}
+
+/// The answer of `rank` with what its mixes cost by the end of the season.
+pub fn rank_priced(context: &Context, answer: &RankAnswer, prices: &Prices) -> String {
+    let change = |c: Change| ChangeJson { days: c.days, range: [c.range.0, c.range.1], told: c.is_told() };
+    let one = |price: &Price| PriceJson {
+        exhausted_later: price.exhausted.map(change),
+        days_outside_more: change(price.outside),
+    };
+    let season = PricesJson {
+        plan: prices.plan.clone(),
+        case: prices.case.clone(),
+        held_until: prices.until.to_string(),
+        against: if prices.against_now { "now" } else { "first" },
+        members: prices.members,
+        mixes: prices.mixes.iter().map(one).collect(),
+    };
+    written(&PricedJson { rank: shape(context, answer, &prices.fingerprint), season })
+}
+
+fn shape(context: &Context, answer: &RankAnswer, fingerprint: &str) -> RankJson {
     let site = context.site();
     let one = |shown: &Shown| ranked(site, shown);
-    let shown = RankJson {
-        head: head(context, &context.fingerprint, &[]),
+    RankJson {
+        head: head(context, fingerprint, &[]),
         release_asked: asked(answer),
         step: 1.0 / answer.steps as f64,
         order: answer.order.iter().map(|c: &Criterion| c.name()).collect(),
@@ -68,8 +92,7 @@ pub fn rank(context: &Context, answer: &RankAnswer) -> String {
         nothing_fits: nothing_fits(context, answer),
         notes: warnings(&answer.notes),
         caution: caution(),
-    };
-    written(&shown)
+    }
 }
 
 fn asked(answer: &RankAnswer) -> AskedJson {

@@ -200,3 +200,35 @@ pub(super) struct NearestJson {
     pub(super) by_c: Option<f64>,
     pub(super) by_mg_l: Option<f64>,
 }
+
+/// A ranking with what its mixes cost by the end of the season.
+#[derive(Serialize)]
+pub(super) struct PricedJson {
+    #[serde(flatten)]
+    pub(super) rank: RankJson,
+    pub(super) season: PricesJson,
+}
+
+#[derive(Serialize)]
+pub(super) struct PricesJson {
+    pub(super) plan: String,
+    pub(super) case: String,
+    pub(super) held_until: String,
+    pub(super) against: &'static str,
+    pub(super) members: usize,
+    pub(super) mixes: Vec<PriceJson>,
+}
+
+/// Days later that it runs out, and days more outside; below zero sooner and fewer.
+#[derive(Serialize)]
+pub(super) struct PriceJson {
+    pub(super) exhausted_later: Option<ChangeJson>,
+    pub(super) days_outside_more: ChangeJson,
+}
+
+#[derive(Serialize)]
+pub(super) struct ChangeJson {
+    pub(super) days: i64,
+    pub(super) range: [i64; 2],
+    pub(super) told: bool,
+}

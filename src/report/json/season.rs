@@ -52,6 +52,7 @@ fn run(site: &Site, of: &SeasonRun) -> RunJson {
         days: (of.run.days.iter().enumerate()).map(|(i, d)| day(site, of, d, cold.first(), i)).collect(),
         gates: outcome.gates.iter().map(|g| gate(site, g)).collect(),
         exhausted_on: on(exhausted),
+        exhausted_until: outcome.exhausted_until.map(|date| date.to_string()),
         exhausted_unknown: unknown(exhausted),
         under_reserve_on: outcome.under_reserve.as_ref().and_then(on),
         targets: targets(site, of),

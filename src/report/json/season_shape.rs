@@ -32,6 +32,8 @@ pub(super) struct RunJson {
     pub(super) gates: Vec<GateJson>,
     /// Null where it does not run out by the end of the season; see `exhausted_unknown`.
     pub(super) exhausted_on: Option<String>,
+    /// First day of decision after it on which an allowed mix comes down to the high again.
+    pub(super) exhausted_until: Option<String>,
     pub(super) exhausted_unknown: Option<String>,
     pub(super) under_reserve_on: Option<String>,
     pub(super) targets: Vec<TargetJson>,

@@ -15,7 +15,7 @@ use unicode_width::UnicodeWidthStr;
 use crate::problem::{Problem, Weight, harmless};
 use crate::tasks::rank::RankAnswer;
 use crate::tasks::river::RiverAnswer;
-use crate::tasks::season::SeasonAnswer;
+use crate::tasks::season::{Prices, SeasonAnswer};
 use crate::tasks::{Context, Freshness, MixAnswer, PoolAnswer};
 use crate::units::{Dimension, System, show};
 
@@ -61,6 +61,16 @@ pub fn mix(context: &Context, answer: &MixAnswer) -> String {
 pub fn rank(context: &Context, answer: &RankAnswer) -> String {
     let mut out = head(context, &context.fingerprint);
     out.push_str(&rank::body(context, answer));
+    out.push_str(&wrapped(caution(), 0));
+    out
+}
+
+/// The answer of `rank` with what its mixes cost by the end of the season.
+pub fn rank_priced(context: &Context, answer: &RankAnswer, prices: &Prices) -> String {
+    let mut out = head(context, &prices.fingerprint);
+    out.push_str(&rank::body(context, answer));
+    out.push('\n');
+    out.push_str(&season::price::block(prices));
     out.push_str(&wrapped(caution(), 0));
     out
 }

@@ -2,6 +2,7 @@
 
 mod asked;
 mod notes;
+mod price;
 mod table;
 
 use std::ops::ControlFlow;
@@ -15,6 +16,7 @@ use crate::season::{Outcome, Plan, Run, Skies};
 use super::{Context, Failure};
 
 pub use asked::SeasonAsked;
+pub use price::{Prices, prices};
 
 /// One season of the answer.
 #[derive(Debug, Clone)]

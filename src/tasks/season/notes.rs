@@ -1,6 +1,6 @@
 //! What a season assumes, and what it does not look at.
 
-use crate::problem::{Problem, Weight};
+use crate::problem::Problem;
 use crate::tasks::Context;
 use crate::units::say;
 
@@ -9,7 +9,7 @@ use super::asked::{Case, Understood};
 /// Notes on the plans, the cases and the model.
 pub(super) fn notes(context: &Context, of: &Understood) -> Vec<Problem> {
     let mut out: Vec<Problem> = of.plan.notes.clone();
-    out.extend(of.refused.iter().map(|problem| Problem { weight: Weight::Flag, ..problem.clone() }));
+    out.extend(of.refused.iter().map(left_out));
     out.extend(context.rules_off());
     out.push(Problem::note("cases", cases(&of.cases)));
     if !context.site().blocks.is_empty() {
@@ -20,6 +20,14 @@ pub(super) fn notes(context: &Context, of: &Understood) -> Vec<Problem> {
                  stand behind a season: its figures are those of one pool under one weather";
     out.push(Problem::note("season-not-checked", words));
     out
+}
+
+/// A plan beside the one spoken of that is refused, by its first problem.
+fn left_out(problem: &Problem) -> Problem {
+    let file = problem.place.file.as_deref().unwrap_or_default();
+    let line = problem.place.line.map_or_else(String::new, |line| format!(", line {line}"));
+    let words = format!("the plan {file} is left out{line}: {}", problem.words);
+    Problem::flag("plan-left-out", words, problem.cure.clone())
 }
 
 /// The cases by their shifts.

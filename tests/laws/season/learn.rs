@@ -2,15 +2,17 @@
 
 use std::ops::ControlFlow;
 
-use chrono::{NaiveDate, TimeDelta};
+use chrono::NaiveDate;
 use gatemix::profile::Profile;
-use gatemix::season::{Forcing, Inflow, LEAST_DAYS, Layers, Learned, Past, Sky, WIND, learn};
-use gatemix::site::{Knobs, Site};
+use gatemix::season::{Choosing, Forcing, Inflow, Layers, Learned, Past, Sky, WIND, learn, past};
+use gatemix::site::{Knobs, Site, Strategy};
 use gatemix::units::{System, say::in_system};
+
+use crate::thrift::tiny::{Of, Tiny};
 
 use super::{air, date, go, layers, level, no_inflow, pool};
 
-const DAYS: i64 = 16;
+const DAYS: usize = 16;
 
 fn site(knobs: Knobs) -> Site {
     let mut site = pool(&[(0.0, 1e6), (15.0, 2e6), (30.0, 4e6)]);
@@ -24,16 +26,16 @@ fn truth() -> Knobs {
 }
 
 /// Days of changing weather.
-fn days(count: i64) -> Vec<Past> {
-    let past = |i: i64| {
+fn days(count: usize) -> Vec<Past> {
+    let past = |(i, date): (usize, NaiveDate)| {
         let turn = ((i * 5) % 11) as f64 / 11.0;
         let sky =
             Sky::Air(air(14.0 + 8.0 * turn + 0.1 * i as f64, 0.5 + 6.0 * (1.0 - turn), 140.0 + 130.0 * turn));
         let inflow = Inflow { flow_m3s: 5.0, temperature_c: 10.0, ..no_inflow() };
-        let forcing = Forcing { date: date() + TimeDelta::days(i), sky: Some(sky), inflow };
+        let forcing = Forcing { date, sky: Some(sky), inflow };
         Past { forcing, levels: vec![level(8.0, 5.0)] }
     };
-    (0..count).map(past).collect()
+    date().iter_days().take(count).enumerate().map(past).collect()
 }
 
 fn at(day: NaiveDate) -> chrono::DateTime<chrono::FixedOffset> {
@@ -45,18 +47,19 @@ fn warm(site: &Site) -> Layers {
 }
 
 /// Casts of a pool with these knobs, each stretch begun from the water that the cast before it shows.
-fn casts(days: &[Past], knobs: [Knobs; 2], stretches: [i64; 2]) -> [Profile; 3] {
+fn casts(days: &[Past], knobs: [Knobs; 2], stretches: [usize; 2]) -> [Profile; 3] {
     let first = site(knobs[0]);
     let mut out = vec![warm(&first).profile(&first, at(date())).unwrap()];
-    let mut begun = 0;
+    let mut rest = days.iter();
+    let mut date = date();
     for (knobs, length) in knobs.iter().zip(stretches) {
         let site = site(*knobs);
         let mut now = Layers::of_profile(&site, out.last().unwrap(), site.season.layer_m).unwrap();
-        for past in &days[begun as usize..(begun + length) as usize] {
+        for past in rest.by_ref().take(length) {
             go(&mut now, &site, past.forcing.sky, past.forcing.inflow, &past.levels);
+            date = date.succ_opt().unwrap();
         }
-        begun += length;
-        out.push(now.profile(&site, at(date() + TimeDelta::days(begun))).unwrap());
+        out.push(now.profile(&site, at(date)).unwrap());
     }
     out.try_into().unwrap()
 }
@@ -101,7 +104,7 @@ fn scenario_a_pool_beyond_the_published_says_so() {
 #[test]
 fn scenario_too_little_is_refused() {
     let days = days(2 * DAYS);
-    let near = casts(&days, [truth(); 2], [LEAST_DAYS - 1, DAYS]);
+    let near = casts(&days, [truth(); 2], [13, DAYS]);
     let told = learned(&near, &days).unwrap_err();
     assert!(told.ends_with("lies 13 days after the cast before it, and 14 are needed"), "{told}");
     let mut few = casts(&days, [truth(); 2], [DAYS, DAYS]);
@@ -136,4 +139,33 @@ fn scenario_learning_can_be_stopped() {
     let casts = casts(&days, [truth(); 2], [DAYS, DAYS]);
     let stop = |done: f64| if done > 0.1 { ControlFlow::Break(()) } else { ControlFlow::Continue(()) };
     assert_eq!(learn(&site(Knobs::default()), [&casts[0], &casts[1], &casts[2]], &days, &stop), None);
+}
+
+/// The days of a run, gone through again, lead to the same pool to the last digit: its solids, its shifts and all.
+#[test]
+fn law_the_days_of_a_run_are_those_that_passed() {
+    let season = Tiny::new(Of {
+        gates: 3,
+        on_a_well: true,
+        days: 9,
+        every: 3,
+        thermocline_m: 14.0,
+        warm_c: 20.0,
+        cold_c: 8.0,
+        release_m3s: 1.5,
+        early_high_c: 16.0,
+        late_high_c: 14.0,
+        equilibrium_c: 22.0,
+    });
+    let skies = season.skies(1.5);
+    let setup = season.setup(&skies, Choosing::By(Strategy::Best));
+    let run = season.by(&skies, Strategy::Best);
+    let days = past(&setup, &run);
+    assert_eq!((days.len(), run.days.len()), (9, 9));
+    let mut now = run.start.clone();
+    for (past, day) in days.iter().zip(&run.days) {
+        go(&mut now, &skies.site, past.forcing.sky, past.forcing.inflow, &past.levels);
+        assert_eq!(past.forcing.date, day.date);
+        assert_eq!(now, day.layers);
+    }
 }

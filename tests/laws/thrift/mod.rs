@@ -3,4 +3,4 @@
 mod brute;
 mod many;
 mod strategies;
-mod tiny;
+pub(crate) mod tiny;

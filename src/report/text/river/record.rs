@@ -17,6 +17,9 @@ pub const PROVISIONAL: &str = "from provisional data; not a compliance determina
 /// The same where every reading was looked through.
 pub const REVIEWED: &str = "from data marked as reviewed; not a compliance determination";
 
+/// What days of a record are without an answer.
+const UNREAD: &str = "without enough readings";
+
 /// What a record is held against.
 #[derive(Clone, Copy)]
 enum Of {
@@ -60,10 +63,15 @@ pub fn record(context: &Context, answer: &RiverAnswer, system: System, width: us
             let Some(held) = held else { continue };
             let place = harmless(&rule.point);
             say(&mut out, &format!("{} at {place}: {asked}", harmless(&rule.name)), width, true);
-            say(&mut out, &format!("  {}; {marked}", tally(&held.all, &by)), width, false);
+            say(&mut out, &format!("  {}; {marked}", tally(&held.all, &by, UNREAD)), width, false);
             if held.seasons.len() > 1 {
                 for (year, season) in &held.seasons {
-                    say(&mut out, &format!("  season of {year}: {}", tally(season, &by)), width, false);
+                    say(
+                        &mut out,
+                        &format!("  season of {year}: {}", tally(season, &by, UNREAD)),
+                        width,
+                        false,
+                    );
                 }
             }
             // where no day is outside a calendar tells nothing more
@@ -82,7 +90,7 @@ fn say(out: &mut Vec<(String, bool)>, text: &str, width: usize, strong: bool) {
 }
 
 /// `3 of 61 days above, by up to 0.8 C (2026-07-14), 2 in a row; 5 days without enough readings`
-pub(in crate::report::text) fn tally(tally: &Tally, amount: &dyn Fn(f64) -> String) -> String {
+pub(in crate::report::text) fn tally(tally: &Tally, amount: &dyn Fn(f64) -> String, unknown: &str) -> String {
     let mut out = Vec::new();
     for (count, word) in [(tally.over, "above"), (tally.under, "below")] {
         if count > 0 {
@@ -97,7 +105,7 @@ pub(in crate::report::text) fn tally(tally: &Tally, amount: &dyn Fn(f64) -> Stri
         out.push(format!("at most {} in a row", tally.longest_run));
     }
     if tally.unknown > 0 {
-        out.push(format!("{} without enough readings", days(tally.unknown)));
+        out.push(format!("{} {unknown}", days(tally.unknown)));
     }
     out.join(", ")
 }

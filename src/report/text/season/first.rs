@@ -32,37 +32,40 @@ pub(super) fn first(context: &Context, answer: &SeasonAnswer, system: System) ->
 
 /// When no allowed mix reaches a target any more.
 pub fn exhausted(outcome: &Outcome) -> String {
-    match &outcome.exhausted {
-        Exhausted::On(date) => format!(
-            "from {date} on no allowed mix comes down to the high of the target at the dam at the release of the day, to \
-             the end of the rule or the season (seen on days of decision)"
-        ),
-        Exhausted::NotBy(date) => format!(
-            "not by {date}: on the last day of decision of every target at the dam an allowed mix comes down to its high"
-        ),
-        Exhausted::Unknown(why) => format!("not known: {}", harmless(why)),
+    let what = "no allowed mix comes down to the high of the target at the dam at the release of the day";
+    match (&outcome.exhausted, outcome.exhausted_until) {
+        (Exhausted::On(date), None) => {
+            format!("from {date} on {what}, to the end (seen on days of decision)")
+        }
+        (Exhausted::On(date), Some(until)) => {
+            format!("from {date} on {what}, until {until} (seen on days of decision)")
+        }
+        (Exhausted::NotBy(date), _) => {
+            format!(
+                "not by {date}: on every day of decision an allowed mix comes down to the high of the target at the dam"
+            )
+        }
+        (Exhausted::Unknown(why), _) => format!("not known: {}", harmless(why)),
     }
 }
 
-/// `in 3 of 3 cases no mix reaches it after 2026-09-12`; `None` of a single case.
+/// `in 3 of 3 cases no mix reaches it any more, first from 2026-09-12 on (warm), last from 2026-10-03 on (cool)`; `None`
+/// of a single case.
 pub fn out_of_reach(answer: &SeasonAnswer) -> Option<String> {
     let cases = answer.cases();
     let known = cases.iter().filter(|r| !matches!(r.outcome.exhausted, Exhausted::Unknown(_))).count();
-    let dates: Vec<_> = cases.iter().filter_map(|r| r.outcome.exhausted.on()).collect();
-    let (first, last) = (dates.iter().min(), dates.iter().max());
+    let mut dates: Vec<_> =
+        cases.iter().filter_map(|r| Some((r.outcome.exhausted.on()?, harmless(&r.run.case)))).collect();
+    dates.sort();
     if known < 2 {
         return None;
     }
-    Some(match (first, last) {
-        (Some(first), Some(last)) if first == last => {
-            format!("in {} of {known} cases no mix reaches it from {last} on", dates.len())
-        }
-        (Some(first), Some(last)) => format!(
-            "in {} of {known} cases no mix reaches it from {last} on, in the first of them from {first} on",
-            dates.len()
-        ),
-        _ => format!("it runs out in none of {known} cases"),
-    })
+    let Some((first, last)) = dates.first().zip(dates.last()) else {
+        return Some(format!("it runs out in none of {known} cases"));
+    };
+    let of = |(date, case): &(chrono::NaiveDate, String)| format!("from {date} on ({case})");
+    let last = if dates.len() > 1 { format!(", last {}", of(last)) } else { String::new() };
+    Some(format!("in {} of {known} cases no mix reaches it any more, first {}{last}", dates.len(), of(first)))
 }
 
 /// When the first reserve is gone into; `None` of a site without.
@@ -90,9 +93,12 @@ pub fn targets(context: &Context, run: &SeasonRun, system: System) -> Vec<String
     let site = context.site();
     let of = |told: &TargetTally| {
         let rule = site.targets.get(told.target)?;
-        let range = told.temperature.as_ref().map(|t| counted(rule, t, system));
-        let floor =
-            told.oxygen.as_ref().map(|t| format!("oxygen {}", tally(t, &|by| format!("{by:.1} mg/L"))));
+        let range = told.temperature.as_ref().filter(|t| is_valid(t)).map(|t| counted(rule, t, system));
+        let floor = told
+            .oxygen
+            .as_ref()
+            .filter(|t| is_valid(t))
+            .map(|t| format!("oxygen {}", judged(t, &|by| outside_by(rule, by, true, system))));
         let words: Vec<String> = [range, floor].into_iter().flatten().collect();
         let place = harmless(&rule.point);
         let asks = rules::asks(rule, system);
@@ -105,11 +111,23 @@ pub fn targets(context: &Context, run: &SeasonRun, system: System) -> Vec<String
 
 /// A range's tally, its degree-days with it.
 fn counted(rule: &Target, of: &Tally, system: System) -> String {
-    let mut out = tally(of, &|by| amounts::by(rule, by, system));
+    let mut out = judged(of, &|by| outside_by(rule, by, false, system));
     if of.sum_outside > 0.0 && rule.is_of_temperature() && !rule.statistic.counts_days() {
         let _ = write!(out, ", {} in all", amounts::degree_days(of.sum_outside, system));
     }
     out
+}
+
+/// Whether the rule is valid on any day of the season.
+fn is_valid(of: &Tally) -> bool {
+    of.judged + of.unknown > 0
+}
+
+fn judged(of: &Tally, amount: &dyn Fn(f64) -> String) -> String {
+    if of.judged == 0 {
+        return format!("not judged on any of {}: the hours of a day are not known", days(of.unknown));
+    }
+    tally(of, amount, "not judged")
 }
 
 /// How far outside a rule: of its oxygen floor, or in the unit of its range.

@@ -18,17 +18,14 @@ pub fn rest(context: &Context, run: &SeasonRun, system: System) -> Vec<String> {
         .iter()
         .map(|w| format!("! {}: {}", w.date, harmless(&in_system(&w.words, system))))
         .collect();
-    for told in &outcome.stages {
-        let Some(stages) = site.season.stages.get(told.stages) else { continue };
-        let Some((stage, _)) = stages.at.get(told.stage) else { continue };
-        out.push(format!(
-            "{} of {} at {}: {}",
-            harmless(stage),
-            harmless(&stages.name),
-            harmless(&stages.point),
-            exhausted_words(&told.on)
-        ));
-    }
+    out.extend(site.season.stages.iter().enumerate().map(|(i, stages)| {
+        let named = outcome.stages.iter().filter(|told| told.stages == i).filter_map(|told| {
+            let (stage, _) = stages.at.get(told.stage)?;
+            Some(format!("{} {}", harmless(stage), exhausted_words(&told.on)))
+        });
+        let named: Vec<String> = named.collect();
+        format!("{} at {}: {}", harmless(&stages.name), harmless(&stages.point), named.join(", "))
+    }));
     out.push(match outcome.least_oxygen {
         Some((least, date)) => format!("least oxygen below the dam: {least:.1} mg/L on {date}"),
         None => "oxygen below the dam: not known".to_owned(),

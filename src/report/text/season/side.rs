@@ -86,7 +86,7 @@ pub fn columns(rows: &[Row]) -> Vec<String> {
         let mark = if row.main { ">" } else { " " };
         let seen = if row.foresight { " (seen)" } else { "" };
         let [plan, case, strategy] = &row.name;
-        let name = fitted(&format!("{}, {case}, {strategy}{seen}", fitted(plan, PLAN)), NAME - 1);
+        let name = fitted(&format!("{}, {case}, {strategy}{seen}", fitted(plan, PLAN).trim_end()), NAME - 1);
         let cells = in_columns(row.cells.each_ref().map(String::as_str));
         format!("{mark} {name:<NAME$}{cells}").trim_end().to_owned()
     }));
