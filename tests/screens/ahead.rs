@@ -5,6 +5,7 @@ use std::collections::BTreeMap;
 use std::sync::Arc;
 
 use chrono::Days;
+use gatemix::mix::limits::Move;
 use gatemix::mix::{Asked, Gate, Setting, draw_levels, groups, levels, release};
 use gatemix::season::{
     Balance, Choosing, Decision, Layers, Plan, PlanDay, Run, SeasonDay, Setup, Skies, Why, outcome,
@@ -59,6 +60,12 @@ fn invented(question: SeasonQuestion) -> Ahead {
     Ahead { question, context, answer }
 }
 
+/// A gate opened, or shut.
+fn turned(outlet: usize, open: bool) -> Move {
+    let (from, to) = if open { (0.0, 1.0) } else { (1.0, 0.0) };
+    Move { outlet, from, to, from_m3s: RELEASE_M3S * from, to_m3s: RELEASE_M3S * to }
+}
+
 /// A pool that loses its upper water, a little warmer each day.
 fn season(context: &Context, plan: &str, case: &str, strategy: &str) -> SeasonRun {
     let site = context.site();
@@ -95,7 +102,10 @@ fn season(context: &Context, plan: &str, case: &str, strategy: &str) -> SeasonRu
                 why,
                 asked: Asked { direct: gates.clone(), ..Asked::default() },
                 moves: if moved { 2 } else { 0 },
+                moved: if moved { vec![turned(1 - outlet, false), turned(outlet, true)] } else { Vec::new() },
                 crew_hours: 1.0,
+                lead_days: 3.0,
+                past: Vec::new(),
                 attainable_c: Some([6.0 + 3.0 * share, 18.0]),
             });
         }

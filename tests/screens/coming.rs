@@ -15,11 +15,11 @@ use crate::sites::beside;
 const PLANS: [(&str, &str); 2] = [
     (
         "plans/1-early.csv",
-        "# name: early\ndate,release_m3s,inflow_m3s,inflow_temperature_C\n2026-07-14,60,10,14\n2026-08-20,30,10,15\n",
+        "# name: early\ndate,release_m3s,inflow_m3s,inflow_temperature_C\n2026-07-14,28,10,14\n2026-08-20,15,10,15\n",
     ),
     (
         "plans/2-late.csv",
-        "# name: late\ndate,release_m3s,inflow_m3s,inflow_temperature_C\n2026-07-14,30,10,14\n2026-08-20,60,10,15\n",
+        "# name: late\ndate,release_m3s,inflow_m3s,inflow_temperature_C\n2026-07-14,15,10,14\n2026-08-20,28,10,15\n",
     ),
 ];
 
@@ -51,7 +51,8 @@ fn compare(system: System) {
     let likes = Likes { units: Some(system), ..Likes::default() };
     let mut driver = Driver::asked(asked, likes, (150, 60));
     let shown = Shown(system);
-    driver.keys("5 ] Right");
+    driver.keys("5");
+    driver.keys("] Right");
     let text = driver.text();
     let answer = answer_of(&driver, "season", "season-numbers", &[]);
     let date = driver.session().season.day.unwrap().to_string();
