@@ -72,7 +72,11 @@ fn law_without_a_shift_the_air_is_that_of_the_file_then_of_the_months() {
         );
     }
     assert!(matches!(skies.site.river.as_ref().unwrap().surface, Some(Surface::File(_))));
-    assert_eq!(skies.from, "the weather file to 2026-08-05, then the figures of the months");
+    let words = "the weather file on 4 of 91 days, on the others the figures of the months";
+    assert_eq!(skies.from, words);
+    // a season that ends before it begins has no air, and stops nothing
+    let over = Skies::of_case(&dam, &conditions, &case(0.0, 1.0), day("2026-08-02"), day("2026-07-31"));
+    assert!(over.unwrap_err().contains("ends on 2026-07-31"));
 }
 
 #[test]

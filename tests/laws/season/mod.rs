@@ -3,6 +3,7 @@
 mod balance;
 mod drawdown;
 mod learn;
+mod outflow;
 mod still;
 mod surface;
 
