@@ -63,6 +63,27 @@ pub(super) fn rows(raw: &RawPlan, site: &Site, problems: &mut Vec<Problem>) {
             "no dissolved solids of the inflow are given: it enters with those of the surface of the pool";
         problems.push(Problem::note("inflow-solids", words));
     }
+    in_some_rows(raw, problems);
+}
+
+/// Notes the figures of the inflow that some rows tell and others do not.
+fn in_some_rows(raw: &RawPlan, problems: &mut Vec<Problem>) {
+    let told = |of: fn(&RawPlanRow) -> Option<f64>| raw.rows.iter().filter_map(of).count();
+    let figures = [
+        ("oxygen", told(|row| row.inflow_mg_l)),
+        ("dissolved solids", told(|row| row.inflow_solids_mg_l)),
+        ("suspended solids", told(|row| row.inflow_suspended_mg_l)),
+    ];
+    for (what, told) in figures {
+        if told > 0 && told < raw.rows.len() {
+            let words = format!(
+                "{what} of the inflow stand in {told} of {} rows: straight lines go between those, and the nearest holds \
+                 before and after",
+                raw.rows.len()
+            );
+            problems.push(Problem::note("inflow-in-part", words));
+        }
+    }
 }
 
 fn missing(raw: &RawPlan, row: &RawPlanRow, problems: &mut Vec<Problem>) {
@@ -138,7 +159,8 @@ impl Line {
         let (Some((d0, v0)), Some((d1, v1))) = (before, after) else {
             return before.or(after).map(|(_, value)| *value);
         };
-        let days = |from: NaiveDate, to: NaiveDate| (to.num_days_from_ce() - from.num_days_from_ce()) as f64;
+        let days =
+            |from: NaiveDate, to: NaiveDate| f64::from(to.num_days_from_ce() - from.num_days_from_ce());
         Some(v0 + (v1 - v0) * days(*d0, date) / days(*d0, *d1))
     }
 }
