@@ -63,7 +63,9 @@ fn of_day(screen: &Screen, (i, day): (usize, &SeasonDay), width: usize, out: &mu
         );
         add(&format!("{}: {words}", screen.place()), Role::Tried);
     }
-    standing(screen, day).into_iter().for_each(|(words, role)| add(&words, role));
+    for (words, role) in standing(screen, day) {
+        add(&words, role);
+    }
     if let Some([low, high]) = reach(screen, day.date) {
         let (low, high) = (figure(low, system.unit(Dimension::Temperature), 1), c(high));
         add(&format!("attainable {low} to {high}"), Role::Plain);
@@ -124,14 +126,13 @@ fn standing(screen: &Screen, day: &SeasonDay) -> Vec<(String, Role)> {
     let missed: Vec<(String, Role)> = missed.collect();
     let unknown = marks.iter().any(|(_, mark)| mark.standing == Standing::Unknown);
     let end = match (missed.is_empty(), unknown, marks.is_empty()) {
-        (false, ..) => "",
-        (true, _, true) => "",
+        (false, ..) | (true, _, true) => "",
         (true, true, _) => ": not all known",
         (true, false, _) => ": inside",
     };
-    let words = asked.unwrap_or_else(|| match marks.is_empty() {
-        true => format!("nothing is asked at {}", screen.place()),
-        false => format!("rules at {}", screen.place()),
+    let words = asked.unwrap_or_else(|| {
+        let none = if marks.is_empty() { "nothing is asked" } else { "rules" };
+        format!("{none} at {}", screen.place())
     });
     let role = if marks.is_empty() || unknown || !missed.is_empty() { Role::Plain } else { Role::Inside };
     std::iter::once((format!("{words}{end}"), role)).chain(missed).collect()
