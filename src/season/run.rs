@@ -121,6 +121,12 @@ pub fn run(setup: &Setup, progress: Progress) -> Option<Run> {
     }
 }
 
+/// Goes through days that have passed: gates as the schedule of the setup tells, else as they stand now, whatever limit
+/// stood against it. Stopped as [`run`] is.
+pub fn passed(setup: &Setup, progress: Progress) -> Option<Run> {
+    Going::new(setup)?.as_it_was(progress)
+}
+
 impl Run {
     /// How its gates are chosen again in another case: what thrift found here is followed there, everything else is
     /// chosen anew.
