@@ -164,7 +164,7 @@ fn held(of: &Pricing, start: &Profile, begins: NaiveDate, mix: &Setting, progres
     let site = season_site(&setup);
     let reached = reached::reached(&setup, &site, &season);
     let end = season.days.last().and_then(|day| day.date.succ_opt());
-    let exhausted = match reached::exhausted(&reached, &season).0 {
+    let exhausted = match reached::exhausted(&reached, &season).first {
         Exhausted::On(date) => Some(date),
         Exhausted::NotBy(_) => end,
         Exhausted::Unknown(_) => None,

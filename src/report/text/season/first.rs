@@ -35,7 +35,8 @@ pub fn exhausted(outcome: &Outcome) -> String {
     let what = "no allowed mix comes down to the high of the target at the dam at the release of the day";
     match (&outcome.exhausted, outcome.exhausted_until) {
         (Exhausted::On(date), None) => {
-            format!("from {date} on {what}, to the end (seen on days of decision)")
+            let last = outcome.exhausted_last.unwrap_or(*date);
+            format!("from {date} on {what}; to {last}, the last day of decision on which a rule asks")
         }
         (Exhausted::On(date), Some(until)) => {
             format!("from {date} on {what}, until {until} (seen on days of decision)")
