@@ -159,10 +159,10 @@ impl Choice<'_> {
     }
 
     /// What is set whatever the ranking says, with what could be reached instead.
-    pub(super) fn given(&self, asked: Asked, progress: Progress) -> Result<Chosen, NoMix> {
+    pub(super) fn given(&self, asked: &Asked, progress: Progress) -> Result<Chosen, NoMix> {
         let ways = self.ranked(progress)?;
         let order = Order::of(&self.question(self.site));
-        let tried = self.tried(&asked, &order);
+        let tried = self.tried(asked, &order);
         tried.map(|tried| self.chosen(tried, &ways)).ok_or_else(|| none_allowed(self.site, &ways.ranking))
     }
 

@@ -21,38 +21,36 @@ const MOST_DECISIONS: usize = 8;
 const MOST_FOLLOWED: usize = 20_000;
 
 /// What stands in the way of following every mix.
-enum Stop {
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(super) enum Stop {
+    /// The caller stopped it, or the cast shows no water.
     Cancelled,
+    /// There are more than are followed.
     TooLarge,
 }
 
 /// The best of all ways to set the gates of a season, where at each decision no more than a few mixes are allowed:
 /// depth first, the best of the day first, a branch left where its days so far are already as bad as the best season
-/// known. `Some(None)` for a larger season; `None` where the caller stops it.
+/// known.
 ///
 /// `daily` sets the best of each day, with `count` decisions due.
-pub(super) fn exact(daily: &Setup, count: usize, progress: Progress) -> Option<Option<Run>> {
+///
+/// # Errors
+/// A larger season, or a caller who stops it.
+pub(super) fn exact(daily: &Setup, count: usize, progress: Progress) -> Result<Run, Stop> {
     if count > MOST_DECISIONS {
-        return Some(None);
+        return Err(Stop::TooLarge);
     }
-    let going = Going::new(daily)?;
+    let going = Going::new(daily).ok_or(Stop::Cancelled)?;
     // a larger season shows it at its first decision, before any is run
     let mut walk = Walk { daily, best: None, followed: 0, progress };
-    let first = match walk.next_choice(going.clone()) {
-        Ok(Some(first)) => first,
-        Ok(None) => return Some(None),
-        Err(Stop::Cancelled) => return None,
-        Err(Stop::TooLarge) => return Some(None),
-    };
-    let mut run = going.to_the_end(progress)?;
+    let first = walk.next_choice(going.clone())?.ok_or(Stop::TooLarge)?;
+    let mut run = going.finished(progress).ok_or(Stop::Cancelled)?;
     run.aims = Some(Arc::new(vec![0.0; count]));
     walk.best = Some((Score::of(daily, &run), run));
-    match walk.branches(first) {
-        Ok(()) => {}
-        Err(Stop::Cancelled) => return None,
-        Err(Stop::TooLarge) => return Some(None),
-    }
-    Some(walk.best.map(|(_, run)| Run { strategy: Strategy::Thrift.name().to_owned(), ..run }))
+    walk.branches(first)?;
+    let (_, run) = walk.best.ok_or(Stop::Cancelled)?;
+    Ok(Run { strategy: Strategy::Thrift.name().to_owned(), ..run })
 }
 
 struct Walk<'a> {

@@ -7,7 +7,7 @@ use std::sync::Arc;
 use chrono::{NaiveDate, NaiveTime};
 
 use crate::mix::limits::{Before, Check, Moves};
-use crate::mix::{Asked, Blend, Day, checks, groups, release};
+use crate::mix::{Asked, Blend, Day, Setting, checks, groups, release};
 use crate::profile::{Column, Profile};
 use crate::rank::Progress;
 use crate::river::{self, Figures};
@@ -22,7 +22,7 @@ use super::plan::PlanDay;
 use super::run::{Ended, Run, SeasonDay, Setup};
 use super::set::{Flowing, flowing};
 use super::step::day;
-use super::strategy::{Wants, is_due, name, wants};
+use super::strategy::{Wants, is_due, name, set_by, wants};
 
 /// Length of the day, s; exact.
 const DAY_S: f64 = 86_400.0;
@@ -110,12 +110,29 @@ impl<'a> Going<'a> {
     }
 
     /// Goes through the days that are left. `None` where the caller stops it.
-    pub(super) fn to_the_end(mut self, progress: Progress) -> Option<Run> {
+    pub(super) fn finished(mut self, progress: Progress) -> Option<Run> {
         while self.is_on() {
             if progress(self.share_done()).is_break() {
                 return None;
             }
             self.next_day(progress)?;
+        }
+        Some(self.run)
+    }
+
+    /// Goes through days that have passed: by the schedule, else by what is set now, whatever limit stood against it.
+    pub(super) fn as_it_was(mut self, progress: Progress) -> Option<Run> {
+        while self.is_on() {
+            if progress(self.share_done()).is_break() {
+                return None;
+            }
+            let date = self.ahead.get(self.run.days.len()).map(|plan| plan.date);
+            if let Some(gates) = date.and_then(|date| set_by(self.setup, date)) {
+                self.asked = Some(Asked::of(&self.site, &Setting::of(gates.clone())));
+            }
+            if let Some(morning) = self.morning() {
+                self.pass(morning, None);
+            }
         }
         Some(self.run)
     }
@@ -208,7 +225,7 @@ impl<'a> Going<'a> {
         match found {
             Some(((_, None), asked)) => {
                 let asked = asked.at_release(&self.site, morning.release_m3s, morning.profile.pool_m);
-                let chosen = self.on(morning, 0.0, |choice| choice.given(asked, progress))?;
+                let chosen = self.on(morning, 0.0, |choice| choice.given(&asked, progress))?;
                 Ok(decision(date, why, chosen))
             }
             Some(((_, Some(check)), _)) => self.best(morning, Why::Forced(check), 0.0, progress),

@@ -117,8 +117,14 @@ pub struct Run {
 pub fn run(setup: &Setup, progress: Progress) -> Option<Run> {
     match setup.choosing {
         Choosing::By(Strategy::Thrift) => thrift(setup, progress),
-        _ => Going::new(setup)?.to_the_end(progress),
+        _ => Going::new(setup)?.finished(progress),
     }
+}
+
+/// Goes through days that have passed: gates as the schedule of the setup tells, else as they stand now, whatever limit
+/// stood against it. Stopped as [`run`] is.
+pub fn passed(setup: &Setup, progress: Progress) -> Option<Run> {
+    Going::new(setup)?.as_it_was(progress)
 }
 
 impl Run {

@@ -4,7 +4,7 @@
 
 use chrono::NaiveDate;
 
-use crate::mix::{Asked, Setting};
+use crate::mix::{Asked, Gate, Setting};
 use crate::site::{Site, Strategy};
 
 use super::aims::aim_on;
@@ -57,11 +57,19 @@ fn schedule(choosing: &Choosing) -> Option<&Schedule> {
     }
 }
 
+/// What the schedule of a setup has come to by a date; `None` before its first change, and without one.
+pub(super) fn set_by<'a>(setup: &'a Setup, date: NaiveDate) -> Option<&'a Vec<Gate>> {
+    come(schedule(&setup.choosing)?, date).map(|change| &change.1)
+}
+
+fn come(schedule: &Schedule, date: NaiveDate) -> Option<&(NaiveDate, Vec<Gate>)> {
+    schedule.changes.iter().take_while(|change| change.0 <= date).last()
+}
+
 /// What a schedule says on a date: at its changes, and on the first day of decisions what it has come to by then. What
 /// was forced holds until its next change.
 fn scheduled(schedule: &Schedule, site: &Site, date: NaiveDate, why: Why) -> Wants {
-    let come = schedule.changes.iter().take_while(|change| change.0 <= date).last();
-    let gates = match (come, why) {
+    let gates = match (come(schedule, date), why) {
         (Some(change), _) if change.0 == date => Some(&change.1),
         (Some(change), Why::Begin) => Some(&change.1),
         (_, Why::Forced(_)) => return Wants::Best(0.0),

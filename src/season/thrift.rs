@@ -9,7 +9,7 @@ use std::sync::atomic::{AtomicUsize, Ordering};
 use crate::rank::Progress;
 use crate::site::Strategy;
 
-use super::exact::exact;
+use super::exact::{Stop, exact};
 use super::going::Going;
 use super::run::{Choosing, Run, Setup, run};
 use super::search::{MOST, search};
@@ -23,8 +23,10 @@ pub(super) fn thrift(setup: &Setup, progress: Progress) -> Option<Run> {
     let last = setup.plan.days.last()?.date;
     let passed = (last - going.decides).num_days().max(0) / i64::from(setup.decide_days.max(1));
     let count = usize::try_from(passed).ok()? + 1;
-    if let Some(found) = exact(&daily, count, progress)? {
-        return Some(found);
+    match exact(&daily, count, progress) {
+        Ok(run) => return Some(run),
+        Err(Stop::Cancelled) => return None,
+        Err(Stop::TooLarge) => {}
     }
     let done = AtomicUsize::new(0);
     let season = |aims: &[f64]| {

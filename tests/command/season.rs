@@ -348,3 +348,24 @@ fn scenario_the_mixes_of_a_ranking_are_priced_against_what_is_set_now() {
     // a plan is of no use without the season
     run(&["rank", folder.named(), "--plan", "steady"]).failed_with(2);
 }
+
+#[test]
+fn scenario_a_schedule_solved_in_view_of_its_case_stands_below_the_cases_it_has_not_seen() {
+    let folder = usual();
+    let thrift = ["--strategy", "thrift", "--every", "21"];
+    let answer = season(&folder, &thrift);
+    assert_eq!((name_of(&answer), &answer["foresight"]), (["steady", "middling", "thrift"], &true.into()));
+    let runs = list(&answer["runs"]);
+    assert!(runs.iter().all(|run| run["foresight"] == false), "what is scored elsewhere has not been seen");
+    assert_eq!(runs.iter().filter(|run| run["strategy"] == "thrift").count(), 3, "two cases and one plan");
+    let order = |run: &Value| {
+        let score = &run["score"];
+        ["worst_c", "days_outside", "degree_days_outside", "moves"].map(|key| number(&score[key]))
+    };
+    let best = runs.iter().find(|run| run["strategy"] == "best").unwrap();
+    assert!(order(&answer) <= order(best), "never worse than day by day where it was solved");
+    let text = told(&[&["season", folder.named(), "--on", "2025-07-14T10:30"], &thrift[..]].concat());
+    let at = |what: &str| text.find(what).unwrap_or_else(|| panic!("{what}: {text}"));
+    assert!(text.contains("foresight, no evidence"), "{text}");
+    assert!(at("steady, warm, thrift") < at("steady, middling, thrift (seen)"), "{text}");
+}

@@ -63,12 +63,15 @@ fn layers(cold_m: f64, pool_m: f64) -> Layers {
         salt_g_per_kg: 0.0,
         suspended_mg_l: 0.0,
     };
-    let stack = |from: f64, to: f64, warm: f64| {
-        let count = ((to - from).round() as usize).max(1);
-        vec![layer((to - from) / count as f64, warm); count]
-    };
-    let mut all = if cold_m > 0.0 { stack(0.0, cold_m, 6.0) } else { Vec::new() };
-    all.extend(stack(cold_m, pool_m, 20.0));
+    // whole metres, from the bed up
+    let metres = (1..=60).map(f64::from).filter(|top| *top < pool_m);
+    let tops: Vec<f64> = metres.chain([pool_m]).collect();
+    let heights = tops.iter().scan(0.0, |below, top| {
+        let height = top - *below;
+        *below = *top;
+        Some((*top, height))
+    });
+    let all = heights.map(|(top, height)| layer(height, if top <= cold_m { 6.0 } else { 20.0 })).collect();
     Layers { layers: all, has_oxygen: true, thickness_m: 1.0 }
 }
 
@@ -163,7 +166,6 @@ fn cast(site: &Site) -> Profile {
             .enumerate()
             .map(row)
             .collect(),
-        ..profile::Raw::default()
     };
     Profile::build(&raw, site, None).0.unwrap()
 }
@@ -192,19 +194,7 @@ fn scenario_cold_water_is_what_the_deepest_usable_outlet_can_draw() {
 #[test]
 fn scenario_a_reserve_counts_from_its_day_on() {
     let text = format!("{SITE}season:\n  reserves: [ {{ from: 08-03, colder_than: 10, volume: 9.0e6 }} ]\n");
-    let site = match gatemix::files::site::site(&text, "site.yaml").site {
-        Some(site) => site,
-        // until the keys of the season are read, the same by hand
-        None => {
-            let mut site = checked(SITE);
-            site.season.reserves.push(gatemix::site::Reserve {
-                from: gatemix::target::YearDay { month: 8, day: 3 },
-                colder_c: 10.0,
-                volume_m3: 9e6,
-            });
-            site
-        }
-    };
+    let site = checked(&text);
     let mut season = days(6);
     // under it on the second day, which does not count yet, and from the fifth on
     for i in [1, 4, 5] {

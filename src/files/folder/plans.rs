@@ -113,8 +113,18 @@ impl Folder {
                 return Err(unknown("gate schedule", named, SCHEDULES, &known));
             }
         };
+        Ok(self.read_schedule(source))
+    }
+
+    /// The gate schedule of the folder whose file is called as that of a plan; `None` where there is none.
+    pub fn schedule_of(&self, plan: &ListedPlan) -> Option<Result<ReadSchedule, Problem>> {
+        let (_, source) = self.csv_sources(SCHEDULES, |file| base(file) == base(&plan.file)).pop()?;
+        Some(source.map(|source| self.read_schedule(source)))
+    }
+
+    fn read_schedule(&self, source: Source) -> ReadSchedule {
         let (schedule, problems) = schedule(&source, &self.site);
-        Ok(ReadSchedule { schedule: schedule.map(Arc::new), problems, source })
+        ReadSchedule { schedule: schedule.map(Arc::new), problems, source }
     }
 
     /// The weather of several years that the site file names; `None` where it names none. It is read once.

@@ -1,6 +1,7 @@
 //! The season ahead: a plan, its cases and strategies, and what comes of them.
 
 mod asked;
+mod learn;
 mod notes;
 mod price;
 mod table;
@@ -16,6 +17,7 @@ use crate::season::{Outcome, Plan, Run, Skies};
 use super::{Context, Failure};
 
 pub use asked::SeasonAsked;
+pub use learn::{Dated, LearnAnswer, LearnAsked, learn};
 pub use price::{Prices, prices};
 
 /// One season of the answer.

@@ -10,6 +10,10 @@ use super::asked::{Case, Understood};
 pub(super) fn notes(context: &Context, of: &Understood) -> Vec<Problem> {
     let mut out: Vec<Problem> = of.plan.notes.clone();
     out.extend(of.refused.iter().map(left_out));
+    out.extend(of.over.iter().map(|plan| {
+        let words = format!("the plan {} tells days that are over, and is not among the others", plan.file);
+        Problem::note("plan-past", words)
+    }));
     out.extend(context.rules_off());
     out.push(Problem::note("cases", cases(&of.cases)));
     if !context.site().blocks.is_empty() {

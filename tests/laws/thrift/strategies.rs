@@ -113,3 +113,34 @@ fn law_best_decides_every_so_many_days_and_says_what_is_attainable() {
         "the aim of 1 is the top of the range"
     );
 }
+
+#[test]
+fn law_the_order_of_gates_in_the_file_changes_nothing() {
+    for on_a_well in [false, true] {
+        let of = Of { on_a_well, days: 6, ..OF };
+        let (tiny, other) = (Tiny::new(of), Tiny::new(of).reversed());
+        for strategy in [Strategy::Hold, Strategy::Best] {
+            let runs = [&tiny, &other].map(|tiny| tiny.by(&tiny.skies(0.0), strategy));
+            assert_eq!(runs[0].days.len(), runs[1].days.len());
+            for (a, b) in runs[0].days.iter().zip(&runs[1].days) {
+                let apart = (a.release.temperature_c - b.release.temperature_c).abs();
+                assert!(apart < 1e-9, "{on_a_well} {strategy:?} {}: {apart}", a.date);
+            }
+        }
+    }
+}
+
+#[test]
+fn law_one_core_finds_what_many_find() {
+    let tiny = Tiny::new(Of { gates: 2, days: 4, every: 2, ..OF });
+    let skies = tiny.skies(0.0);
+    let one_core = rayon::ThreadPoolBuilder::new().num_threads(1).build().unwrap();
+    let many = tiny.by(&skies, Strategy::Thrift);
+    let one = one_core.install(|| tiny.by(&skies, Strategy::Thrift));
+    assert_eq!(one.aims, many.aims);
+    assert_eq!(one.decisions, many.decisions);
+    for (a, b) in one.days.iter().zip(&many.days) {
+        assert_eq!(a.release, b.release);
+        assert_eq!(a.layers, b.layers);
+    }
+}

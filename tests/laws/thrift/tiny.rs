@@ -53,7 +53,7 @@ impl Tiny {
         Self::at(of, site)
     }
 
-    /// The same season at a dam whose file goes on with more lines, its gates in the order given.
+    /// The same season at a dam whose file goes on with more lines.
     pub fn with(of: Of, more: &[&str]) -> Self {
         let site = dam(&of, more);
         Self::at(of, site)
@@ -95,6 +95,12 @@ impl Tiny {
             notes: Vec::new(),
         };
         Self { of, site, start, plan }
+    }
+
+    /// The same with its outlets told in the opposite order.
+    pub fn reversed(mut self) -> Self {
+        self.site.outlets.reverse();
+        self
     }
 
     /// The air of a case that differs by so much, C.
