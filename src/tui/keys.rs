@@ -107,6 +107,8 @@ pub enum Action {
     Calendar,
     /// Oxygen in place of temperature.
     Oxygen,
+    /// What the mixes cost by the end of the season.
+    Prices,
 }
 
 /// Where a key works.
@@ -276,7 +278,8 @@ pub const TABLE: &[Binding] = &[
     ),
     on(P::Rank, Char('c'), "c", "order", "order the criteria", A::Order),
     on(P::Rank, Char('t'), "t", "release", "type the total release", A::Release),
-    on(P::Rank, Char('r'), "r", "", "rank again after it was stopped", A::Again),
+    on(P::Rank, Char('p'), "p", "price", "what each mix costs by the end of the season; and back", A::Prices),
+    on(P::Rank, Char('r'), "r", "", "rank, or compute the prices, again after it was stopped", A::Again),
     on(P::Rank, KeyCode::PageUp, "PgUp PgDn", "", "scroll what is said of the mix", A::PageUp),
     on(P::Rank, KeyCode::PageDown, "", "", "", A::PageDown),
     on(P::Rank, KeyCode::Home, "Home End", "", "the first, the last", A::First),

@@ -39,7 +39,8 @@ fn invented(question: SeasonQuestion) -> Ahead {
     let context = context.unwrap_or_else(|_| question.base.clone());
     let asked = &question.asked;
     let strategy = asked.strategy.clone().unwrap_or_else(|| "best".to_owned());
-    let plan = asked.plan.clone().unwrap_or_else(|| "early".to_owned());
+    let file = asked.plan.as_deref().unwrap_or("plans/early.csv");
+    let plan = file.trim_start_matches("plans/").trim_end_matches(".csv").to_owned();
     let case = asked.case.clone().unwrap_or_else(|| "middling".to_owned());
     let other = if plan == "early" { "late" } else { "early" };
     let cases = context.site().season.cases.iter().map(|c| c.name.clone()).filter(|name| *name != case);

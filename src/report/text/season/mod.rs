@@ -22,7 +22,7 @@ use super::{labelled, list, wrapped};
 pub use calendar::{gates, moved_words, moves, reach};
 pub use cold::{cold, left};
 pub use first::{exhausted, out_of_reach, outside_by, reserve, targets};
-pub use price::lines as prices;
+pub use price::{asked as priced, lines as prices};
 pub use rest::rest;
 pub use side::{HEADS, Row, columns, meaning, side};
 

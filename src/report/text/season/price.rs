@@ -17,7 +17,7 @@ pub(in crate::report::text) fn block(prices: &Prices) -> String {
 }
 
 /// What the prices are of.
-fn asked(prices: &Prices) -> String {
+pub fn asked(prices: &Prices) -> String {
     let against = if prices.against_now { "holding what is set now as long" } else { "no. 1" };
     format!(
         "each mix held until {}, then the best mix of the day: plan {}, case {}; against {against}, in brackets the range \

@@ -16,9 +16,11 @@ pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
     let here = [&run.plan, &run.case, &run.strategy].map(|name| harmless(name));
     let mut rows: Vec<Row> = Vec::new();
     for ahead in screen.session.seasons_beside(screen.shown.ahead) {
+        // the newest of each stands first already; two plans of one answer may have one name
+        let known = rows.len();
         for row in side(&ahead.answer, system) {
-            // the newest of each stands first already
-            if rows.iter().all(|r| (&r.name, r.foresight) != (&row.name, row.foresight)) {
+            let is = |r: &Row| (&r.name, r.foresight) == (&row.name, row.foresight);
+            if !rows.iter().take(known).any(is) {
                 rows.push(row);
             }
         }

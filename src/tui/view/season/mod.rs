@@ -41,29 +41,42 @@ struct Screen<'a> {
 }
 
 impl Screen<'_> {
-    /// That the season is not of what is set and chosen, and whether another is on its way.
-    fn old_words(&self) -> Option<&'static str> {
-        self.shown.old.then_some(if self.model.ahead.is_some() {
-            "FROM BEFORE; the new is being computed"
-        } else {
-            "FROM BEFORE; r computes the new"
+    /// That the season is not of what is set and chosen, and whether another is on its way, or why there is none.
+    fn old_words(&self) -> Option<String> {
+        self.shown.old.then(|| match &self.session.season_wrong {
+            _ if self.model.ahead.is_some() => "FROM BEFORE; the new is being computed".to_owned(),
+            None | Some(Failure::Stopped) => "FROM BEFORE; r computes the new".to_owned(),
+            Some(failure) => {
+                format!("FROM BEFORE; no newer season: {}", failure_words(failure, self.model.system()))
+            }
         })
+    }
+
+    /// Whether the schedule of a strategy that is solved on a case has seen the one shown.
+    fn seen_words(&self) -> &'static str {
+        let (run, main) = (&self.shown.run.run, &self.shown.ahead.answer.main);
+        let solved = run.aims.is_some() || main.foresight;
+        if self.shown.run.foresight {
+            "; SOLVED ON THIS CASE: foresight"
+        } else if !solved || run.strategy != main.run.strategy {
+            ""
+        } else if run.case == main.run.case {
+            "; solved on this case under another plan"
+        } else {
+            "; this case was not seen"
+        }
     }
 
     /// Plan, case and strategy of what is shown, each with its key.
     fn heading(&self) -> String {
         let (run, answer) = (&self.shown.run.run, &self.shown.ahead.answer);
-        let unseen = match (self.shown.run.foresight, run.aims.is_some() || answer.main.foresight) {
-            (true, _) => "; SOLVED ON THIS CASE: foresight",
-            (false, true) if run.strategy == answer.main.run.strategy => "; this case was not seen",
-            _ => "",
-        };
         format!(
-            "plan {} | case {} | {}, every {} d{unseen}",
+            "plan {} | case {} | {}, every {} d{}",
             harmless(&run.plan),
             harmless(&run.case),
             harmless(&run.strategy),
-            answer.decide_days
+            answer.decide_days,
+            self.seen_words()
         )
     }
 }

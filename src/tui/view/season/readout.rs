@@ -3,6 +3,7 @@
 use chrono::NaiveDate;
 
 use crate::mix::Setting;
+use crate::mix::limits::Check;
 use crate::problem::harmless;
 use crate::report::text::season::outside_by;
 use crate::report::text::season::{exhausted_words, moved_words};
@@ -22,7 +23,7 @@ const FULL: usize = 32;
 pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
     let mut out = Lines::new();
     if let Some(words) = screen.old_words() {
-        say(&mut out, words, width, 2, Role::Old);
+        say(&mut out, &words, width, 2, Role::Old);
     }
     let days = &screen.shown.run.run.days;
     match screen.day().and_then(|i| Some((i, days.get(i)?))) {
@@ -84,6 +85,9 @@ fn of_day(screen: &Screen, (i, day): (usize, &SeasonDay), width: usize, out: &mu
     let calendar = &screen.shown.run.outcome.calendar;
     if let Some(on) = calendar.iter().rev().find(|on| on.date <= day.date) {
         add(&format!("since {}: {}", on.date.format("%m-%d"), why(on, screen)), Role::Plain);
+        for words in past(screen, on.date) {
+            add(&format!("! {words}: no mix keeps it"), Role::Warn);
+        }
     }
     if let Some(next) = calendar.iter().find(|on| on.date > day.date) {
         let book = next.book_by.map_or_else(String::new, |by| format!(", book by {}", by.format("%m-%d")));
@@ -103,6 +107,13 @@ fn why(on: &GateMoves, screen: &Screen) -> String {
     }
 }
 
+/// Limits of the change that a decision breaks, since none could be made that keeps them.
+fn past(screen: &Screen, date: NaiveDate) -> Vec<String> {
+    let made = screen.shown.run.run.decisions.iter().filter(|decision| decision.date == date);
+    let words = |check: &Check| in_system(&check.words(screen.site()), screen.model.system());
+    made.flat_map(|decision| &decision.past).map(|check| harmless(&words(check))).collect()
+}
+
 /// What is asked at the place looked at, and how the day stands: a line, and one for each rule it is outside of.
 fn standing(screen: &Screen, day: &SeasonDay) -> Vec<(String, Role)> {
     let system = screen.model.system();
@@ -110,12 +121,17 @@ fn standing(screen: &Screen, day: &SeasonDay) -> Vec<(String, Role)> {
     let dimension = if oxygen { Dimension::Concentration } else { Dimension::Temperature };
     let value = |v: f64| show(v, dimension, system, 1);
     let low_of = |v: f64| figure(v, system.unit(dimension), 1);
-    let asked = match screen.asked(day.date) {
+    let range = |ends: [Option<f64>; 2]| match ends {
         [None, None] => None,
-        [Some(low), None] => Some(format!("asked {} at least", value(low))),
-        [None, Some(high)] => Some(format!("asked {} at most", value(high))),
-        [Some(low), Some(high)] => Some(format!("asked {} to {}", low_of(low), value(high))),
+        [Some(low), None] => Some(format!("{} at least", value(low))),
+        [None, Some(high)] => Some(format!("{} at most", value(high))),
+        [Some(low), Some(high)] => Some(format!("{} to {}", low_of(low), value(high))),
     };
+    let (rule, kept) = (screen.asked(day.date), screen.kept(day.date));
+    // days outside are counted without the buffer, mixes are chosen with it
+    let buffered =
+        range(kept).filter(|_| kept != rule).map_or_else(String::new, |r| format!(", planned {r}"));
+    let asked = range(rule).map(|range| format!("asked {range}{buffered}"));
     let marks: Vec<(&Target, Mark)> = screen.marks(day.date).collect();
     let missed = marks.iter().filter(|(_, mark)| mark.outside()).map(|(rule, mark)| {
         let by =
