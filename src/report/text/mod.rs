@@ -70,7 +70,7 @@ pub fn rank_priced(context: &Context, answer: &RankAnswer, prices: &Prices) -> S
     let mut out = head(context, &prices.fingerprint);
     out.push_str(&rank::body(context, answer));
     out.push('\n');
-    out.push_str(&season::price::block(prices));
+    out.push_str(&season::price::block(context, prices));
     out.push_str(&wrapped(caution(), 0));
     out
 }

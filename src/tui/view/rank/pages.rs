@@ -83,6 +83,9 @@ pub(super) fn prices(screen: &Screen, width: usize) -> Lines {
         let gates = openings(&ranked.context, mix, model.system()).join(", ");
         say(&mut out, &format!("     {gates}"), width, 5, Role::Quiet);
     }
+    for note in &prices.notes {
+        labelled(&mut out, "Note", MARGIN, &note.advice(model.system()), width, Role::Plain);
+    }
     out
 }
 

@@ -20,6 +20,7 @@ use ratatui::layout::{Position, Rect};
 
 use crate::problem::harmless;
 use crate::tasks::Failure;
+use crate::tasks::season::Seen;
 use crate::tui::draw::season::{day_at, season};
 use crate::tui::look::Role;
 use crate::tui::model::{Model, SeasonPage, SeasonShown, Session};
@@ -54,16 +55,14 @@ impl Screen<'_> {
 
     /// Whether the schedule of a strategy that is solved on a case has seen the one shown.
     fn seen_words(&self) -> &'static str {
-        let (run, main) = (&self.shown.run.run, &self.shown.ahead.answer.main);
-        let solved = run.aims.is_some() || main.foresight;
-        if self.shown.run.foresight {
-            "; SOLVED ON THIS CASE: foresight"
-        } else if !solved || run.strategy != main.run.strategy {
-            ""
-        } else if run.case == main.run.case {
-            "; solved on this case under another plan"
-        } else {
-            "; this case was not seen"
+        let (shown, answer) = (self.shown.run, &self.shown.ahead.answer);
+        match answer.seen(shown) {
+            Seen::All => "; SOLVED ON THIS CASE: foresight",
+            Seen::Weather => "; solved in this weather under another plan",
+            Seen::Nothing if answer.main.foresight && shown.run.strategy == answer.main.run.strategy => {
+                "; this case was not seen"
+            }
+            Seen::Nothing => "",
         }
     }
 

@@ -3,10 +3,8 @@
 use chrono::NaiveDate;
 
 use crate::mix::Setting;
-use crate::mix::limits::Check;
 use crate::problem::harmless;
-use crate::report::text::season::outside_by;
-use crate::report::text::season::{exhausted_words, moved_words};
+use crate::report::text::season::{exhausted_words, moved_words, outside_by, past};
 use crate::report::text::{setting_words, volume};
 use crate::season::{Exhausted, GateMoves, SeasonDay};
 use crate::target::{Mark, Standing, Target};
@@ -85,9 +83,11 @@ fn of_day(screen: &Screen, (i, day): (usize, &SeasonDay), width: usize, out: &mu
     let calendar = &screen.shown.run.outcome.calendar;
     if let Some(on) = calendar.iter().rev().find(|on| on.date <= day.date) {
         add(&format!("since {}: {}", on.date.format("%m-%d"), why(on, screen)), Role::Plain);
-        for words in past(screen, on.date) {
-            add(&format!("! {words}: no mix keeps it"), Role::Warn);
-        }
+    }
+    // a limit of the change can be broken where no gate moves
+    let decision = screen.shown.run.run.decisions.iter().rev().find(|decision| decision.date <= day.date);
+    if let Some(words) = decision.and_then(|decision| past(site, decision, system)) {
+        add(&format!("! {words}"), Role::Warn);
     }
     if let Some(next) = calendar.iter().find(|on| on.date > day.date) {
         let book = next.book_by.map_or_else(String::new, |by| format!(", book by {}", by.format("%m-%d")));
@@ -105,13 +105,6 @@ fn why(on: &GateMoves, screen: &Screen) -> String {
         Some((_, words)) => format!("FORCED by {}", harmless(&in_system(words, screen.model.system()))),
         None => moved_words(screen.site(), &on.moved, screen.model.system()),
     }
-}
-
-/// Limits of the change that a decision breaks, since none could be made that keeps them.
-fn past(screen: &Screen, date: NaiveDate) -> Vec<String> {
-    let made = screen.shown.run.run.decisions.iter().filter(|decision| decision.date == date);
-    let words = |check: &Check| in_system(&check.words(screen.site()), screen.model.system());
-    made.flat_map(|decision| &decision.past).map(|check| harmless(&words(check))).collect()
 }
 
 /// What is asked at the place looked at, and how the day stands: a line, and one for each rule it is outside of.
