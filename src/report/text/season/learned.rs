@@ -39,9 +39,14 @@ pub(in crate::report::text) fn body(context: &Context, answer: &LearnAnswer) -> 
     for fit in learned.each() {
         out.push_str(&row(&fit));
     }
+    if !learned.at_end.is_empty() {
+        out.push_str(&wrapped("  ! at an end of what is published: the pool asks for more than that", 4));
+    }
     out.push_str("\nFor site.yaml, among what it says under `season`\n");
     for line in lines(learned) {
-        out.push_str(&format!("  {line}\n"));
+        out.push_str("  ");
+        out.push_str(&line);
+        out.push('\n');
     }
     out.push_str(&wrapped(
         "  light_per_m stands in the place of secchi, where that is given; nothing was written.",
@@ -67,7 +72,7 @@ fn off([before, after]: [Apart; 2], system: System) -> String {
 fn row(fit: &Fitted) -> String {
     let scale = if fit.name == WIND { 100.0 } else { 1.0 };
     let of = |value: f64| figures(scale * value);
-    let mark = if fit.at_end { "  ! at an end: the pool asks for more" } else { "" };
+    let mark = if fit.at_end { "  ! at an end" } else { "" };
     let range = format!("{} to {}", of(fit.range[0]), of(fit.range[1]));
     format!("  {:<24} {:>8} {:>8}   {range}{mark}\n", called(fit.name), of(fit.before), of(fit.after))
 }
