@@ -4,6 +4,7 @@
 mod calendar;
 mod cold;
 mod first;
+pub(in crate::report) mod learned;
 pub(super) mod price;
 mod rest;
 mod side;
