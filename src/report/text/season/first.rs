@@ -3,7 +3,7 @@
 use std::fmt::Write as _;
 
 use crate::problem::harmless;
-use crate::season::{Exhausted, Outcome, Reached, TargetTally};
+use crate::season::{Exhausted, Outcome, TargetTally};
 use crate::target::{Tally, Target};
 use crate::tasks::Context;
 use crate::tasks::season::{SeasonAnswer, SeasonRun};
