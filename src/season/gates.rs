@@ -36,19 +36,24 @@ pub(super) fn usable(site: &Site, outlet: usize, pool_m: f64, date: NaiveDate) -
 }
 
 /// The stretches of the season in which each outlet can be used, by outlet; one that never can has one without days.
-pub(super) fn lives(site: &Site, days: &[SeasonDay]) -> Vec<GateLife> {
-    (0..site.outlets.len()).flat_map(|outlet| lives_of(site, days, outlet)).collect()
+///
+/// A day is judged under the pool of its morning, as what is set on it is.
+pub(super) fn lives(site: &Site, run: &Run) -> Vec<GateLife> {
+    (0..site.outlets.len()).flat_map(|outlet| lives_of(site, run, outlet)).collect()
 }
 
-fn lives_of(site: &Site, days: &[SeasonDay], outlet: usize) -> Vec<GateLife> {
+fn lives_of(site: &Site, run: &Run, outlet: usize) -> Vec<GateLife> {
+    let days = &run.days;
+    let mornings = std::iter::once(run.start.pool_m(&site.pool)).chain(days.iter().map(|day| day.pool_m));
     let mut out: Vec<GateLife> = Vec::new();
     let mut before: Option<NaiveDate> = None;
     let mut barred: Option<Check> = None;
-    for day in days {
+    for (day, pool_m) in days.iter().zip(mornings) {
         let reason = |check: &Check| (check.rule.name(), check.words(site));
-        match (usable(site, outlet, day.pool_m, day.date), before) {
+        match (usable(site, outlet, pool_m, day.date), before) {
             (Ok(()), None) => {
-                out.push(GateLife { first_day: Some(day.date), ..GateLife::never(outlet) });
+                let reason = barred.as_ref().map(reason);
+                out.push(GateLife { first_day: Some(day.date), reason, ..GateLife::never(outlet) });
                 before = Some(day.date);
             }
             (Ok(()), Some(_)) => before = Some(day.date),

@@ -62,17 +62,23 @@ impl Skies {
         from: NaiveDate,
         to: NaiveDate,
     ) -> Result<Self, String> {
+        if to < from {
+            return Err(format!("it ends on {to}, before the season begins on {from}"));
+        }
         let base = |date| base(site, conditions, date);
         let airs: Option<BTreeMap<NaiveDate, Air>> =
             season(from, to).map(|date| Some((date, shifted(&base(date)?, case)))).collect();
         if let Some(mut days) = airs {
             let after = to.iter_days().skip(1).take(AFTER_DAYS);
             days.extend(after.map_while(|date| Some((date, shifted(&base(date)?, case)))));
-            let told = conditions.weather.days.range(from..=to).next_back().map(|(date, _)| *date);
+            let told = season(from, to).filter(|date| conditions.weather.day(*date).is_some()).count();
+            let all = season(from, to).count();
             let from = match told {
-                Some(last) if last == to => "the weather file".to_owned(),
-                Some(last) => format!("the weather file to {last}, then the figures of the months"),
-                None => "the figures of the months".to_owned(),
+                0 => "the figures of the months".to_owned(),
+                told if told == all => "the weather file".to_owned(),
+                told => format!(
+                    "the weather file on {told} of {all} days, on the others the figures of the months"
+                ),
             };
             return Ok(Self::under(site, conditions, case.clone(), days, from));
         }

@@ -10,6 +10,7 @@ mod cautions;
 mod demo;
 mod escapes;
 mod exits;
+mod learn;
 mod limits;
 mod loggers;
 mod new;

@@ -3,7 +3,7 @@
 use std::fmt::Write as _;
 
 use crate::problem::harmless;
-use crate::season::{Exhausted, Outcome, Reached, TargetTally};
+use crate::season::{Exhausted, Outcome, TargetTally};
 use crate::target::{Tally, Target};
 use crate::tasks::Context;
 use crate::tasks::season::{SeasonAnswer, SeasonRun};
@@ -35,11 +35,8 @@ pub fn exhausted(outcome: &Outcome) -> String {
     let what = "no allowed mix comes down to the high of the target at the dam at the release of the day";
     match (&outcome.exhausted, outcome.exhausted_until) {
         (Exhausted::On(date), None) => {
-            let asks = |on: &&Reached| on.range_c().1.is_some();
-            let last = outcome.reached.iter().rfind(asks).map_or(*date, |on| on.date);
-            format!(
-                "from {date} on {what}, to {last}, the last day of decision on which a rule asks (seen on days of decision)"
-            )
+            let last = outcome.exhausted_last.unwrap_or(*date);
+            format!("from {date} on {what}; to {last}, the last day of decision on which a rule asks")
         }
         (Exhausted::On(date), Some(until)) => {
             format!("from {date} on {what}, until {until} (seen on days of decision)")

@@ -4,6 +4,7 @@
 mod calendar;
 mod cold;
 mod first;
+pub(in crate::report) mod learned;
 pub(super) mod price;
 mod rest;
 mod side;
@@ -23,7 +24,7 @@ use super::{labelled, list, wrapped};
 pub use calendar::{gates, moved_words, moves, past, reach};
 pub use cold::{cold, left};
 pub use first::{exhausted, out_of_reach, outside_by, reserve, targets};
-pub use price::lines as prices;
+pub use price::{asked as priced, lines as prices};
 pub use rest::rest;
 pub use side::{HEADS, Row, columns, meaning, side};
 

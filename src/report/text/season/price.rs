@@ -20,7 +20,7 @@ pub(in crate::report::text) fn block(context: &Context, prices: &Prices) -> Stri
 }
 
 /// What the prices are of.
-fn asked(prices: &Prices) -> String {
+pub fn asked(prices: &Prices) -> String {
     let against = if prices.against_now { "holding what is set now as long" } else { "no. 1" };
     format!(
         "each mix held from {} to {} as long as no limit stands against it, then the best mix of the day: plan {}, case \

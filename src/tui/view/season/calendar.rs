@@ -27,9 +27,9 @@ pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
             // the blanks that make columns stay where a line has room
             let line = format!("  {line}");
             if line.chars().count() <= width {
-                out.push((line, Role::Plain))
+                out.push((line, Role::Plain));
             } else {
-                say(&mut out, &line, width, 4, Role::Plain)
+                say(&mut out, &line, width, 4, Role::Plain);
             }
         }
     }
