@@ -9,52 +9,59 @@ use crate::profile::LAYERED_C;
 use crate::site::Site;
 use crate::units::say;
 
+use super::gates::mornings_m;
 use super::layers::Layers;
 use super::outcome::{StageFall, Stopping};
 use super::run::{Run, SeasonDay};
 
 /// Hours over which a change of the release is made where the site does not say (choice, as its limits take it).
 const CHANGE_HOURS: f64 = 1.0;
+/// Fall of a day beyond its limit that is not told, m (choice): what evaporates on one day is made good on the next,
+/// so that a plan at its limit falls by some millimetres more or less.
+const FALL_SLACK_M: f64 = 0.01;
 
 /// Everything to beware of, by kind.
 pub(super) fn warnings(site: &Site, run: &Run) -> Vec<Stopping> {
     [deep_water(run), drawdown(site, run)].into_iter().flatten().collect()
 }
 
-/// Water with hardly any oxygen that comes into the release, where there was none of it at the season's start.
+/// Water with hardly any oxygen that comes into the release, where there was none or less of it at the season's start.
 fn deep_water(run: &Run) -> Option<Stopping> {
-    let low = |day: &&SeasonDay| day.release.oxygen_low_share > LOW_OXYGEN_SHARE;
-    let first = run.days.iter().find(low)?;
-    if run.days.first().is_none_or(|day| low(&day)) {
-        return None;
-    }
+    let began = run.days.first()?.release.oxygen_low_share;
+    let most = if began > LOW_OXYGEN_SHARE { began + LOW_OXYGEN_SHARE } else { LOW_OXYGEN_SHARE };
+    let first = run.days.iter().find(|day| day.release.oxygen_low_share > most)?;
     let words = format!(
-        "{:.0} % of the release comes from water with less than 1 mg/L of oxygen, which none of it did when the season \
-         began: hydrogen sulphide, iron and manganese can come with it and take up oxygen below the dam; they are not \
-         computed",
-        100.0 * first.release.oxygen_low_share
+        "{:.0} % of the release comes from water with less than 1 mg/L of oxygen, on the first day of the season it \
+         was {:.0} %: hydrogen sulphide, iron and manganese can come with it and take up oxygen below the dam; they \
+         are not computed",
+        100.0 * first.release.oxygen_low_share,
+        100.0 * began
     );
     Some(Stopping { date: first.date, kind: "deep-water", words })
 }
 
-/// The first day on which the pool falls faster than the site allows, and the fastest.
+/// The first day on which the pool falls faster than the site allows, how many there are, and the fastest.
 fn drawdown(site: &Site, run: &Run) -> Option<Stopping> {
     let most_m = site.limits.drawdown_m_per_day?;
-    let (fastest_m, first) = falls(site, run).fold((0.0_f64, None), |(fastest, first), (date, fall_m)| {
-        (fastest.max(fall_m), first.or((fall_m > most_m).then_some(date)))
-    });
+    let too_fast: Vec<(NaiveDate, f64)> =
+        falls(site, run).filter(|(_, fall_m)| *fall_m > most_m + FALL_SLACK_M).collect();
+    let (date, _) = *too_fast.first()?;
+    let fastest_m = too_fast.iter().fold(0.0, |fastest: f64, (_, fall_m)| fastest.max(*fall_m));
+    let days = match too_fast.len() {
+        1 => "on this day".to_owned(),
+        days => format!("first on this day, on {days} days in all"),
+    };
     let words = format!(
-        "the pool falls by more than {} in a day from here on, by up to {}",
+        "the pool falls by more than the {} that limits.max_drawdown_per_day allows {days}, by up to {}",
         say::m(most_m, 2),
         say::m(fastest_m, 2)
     );
-    Some(Stopping { date: first?, kind: "max_drawdown_per_day", words })
+    Some(Stopping { date, kind: "max_drawdown_per_day", words })
 }
 
 /// How far the pool falls on each day, m.
 fn falls<'a>(site: &'a Site, run: &'a Run) -> impl Iterator<Item = (NaiveDate, f64)> + 'a {
-    let starts = std::iter::once(run.start.pool_m(&site.pool)).chain(run.days.iter().map(|d| d.pool_m));
-    run.days.iter().zip(starts).map(|(day, before)| (day.date, before - day.pool_m))
+    run.days.iter().zip(mornings_m(site, run)).map(|(day, before)| (day.date, before - day.pool_m))
 }
 
 /// The fastest fall of the pool in a day, m, and when; `None` where it never falls.

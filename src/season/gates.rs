@@ -35,20 +35,26 @@ pub(super) fn usable(site: &Site, outlet: usize, pool_m: f64, date: NaiveDate) -
     told
 }
 
-/// The stretches of the season in which each outlet can be used, by outlet; one that never can has one without days.
-pub(super) fn lives(site: &Site, days: &[SeasonDay]) -> Vec<GateLife> {
-    (0..site.outlets.len()).flat_map(|outlet| lives_of(site, days, outlet)).collect()
+/// The pool on the morning of each day, m: what is decided and looked at on that day is so under it.
+pub(super) fn mornings_m<'a>(site: &'a Site, run: &'a Run) -> impl Iterator<Item = f64> + 'a {
+    std::iter::once(run.start.pool_m(&site.pool)).chain(run.days.iter().map(|day| day.pool_m))
 }
 
-fn lives_of(site: &Site, days: &[SeasonDay], outlet: usize) -> Vec<GateLife> {
+/// The stretches of the season in which each outlet can be used, by outlet; one that never can has one without days.
+pub(super) fn lives(site: &Site, run: &Run) -> Vec<GateLife> {
+    (0..site.outlets.len()).flat_map(|outlet| lives_of(site, run, outlet)).collect()
+}
+
+fn lives_of(site: &Site, run: &Run, outlet: usize) -> Vec<GateLife> {
     let mut out: Vec<GateLife> = Vec::new();
     let mut before: Option<NaiveDate> = None;
     let mut barred: Option<Check> = None;
-    for day in days {
-        let reason = |check: &Check| (check.rule.name(), check.words(site));
-        match (usable(site, outlet, day.pool_m, day.date), before) {
+    let reason = |check: &Check| (check.rule.name(), check.words(site));
+    for (day, morning_m) in run.days.iter().zip(mornings_m(site, run)) {
+        match (usable(site, outlet, morning_m, day.date), before) {
             (Ok(()), None) => {
-                out.push(GateLife { first_day: Some(day.date), ..GateLife::never(outlet) });
+                let reason = barred.take().map(|check| reason(&check));
+                out.push(GateLife { first_day: Some(day.date), reason, ..GateLife::never(outlet) });
                 before = Some(day.date);
             }
             (Ok(()), Some(_)) => before = Some(day.date),
@@ -56,7 +62,8 @@ fn lives_of(site: &Site, days: &[SeasonDay], outlet: usize) -> Vec<GateLife> {
                 if let (Some(last), Some(life)) = (last, out.last_mut()) {
                     life.last_day = Some(last);
                     life.reason = Some(reason(&check));
-                    life.book_by = open_on(days, outlet, last).then(|| lead(site, outlet, last)).flatten();
+                    let open = open_on(&run.days, outlet, last);
+                    life.book_by = open.then(|| lead(site, outlet, last)).flatten();
                 }
                 before = None;
                 barred = Some(check);
@@ -64,8 +71,7 @@ fn lives_of(site: &Site, days: &[SeasonDay], outlet: usize) -> Vec<GateLife> {
         }
     }
     if out.is_empty() {
-        let reason = barred.map(|check| (check.rule.name(), check.words(site)));
-        out.push(GateLife { reason, ..GateLife::never(outlet) });
+        out.push(GateLife { reason: barred.map(|check| reason(&check)), ..GateLife::never(outlet) });
     }
     out
 }

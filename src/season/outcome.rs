@@ -79,7 +79,8 @@ pub struct GateLife {
     pub first_day: Option<NaiveDate>,
     /// Last day in a row from then; `None` while it can be used to the end.
     pub last_day: Option<NaiveDate>,
-    /// Why not before the first, or not after the last, by the name of the limit and in words.
+    /// Why not after the last; where it can be used to the end, why not before the first; by the name of the limit
+    /// and in words.
     pub reason: Option<(&'static str, String)>,
     /// The day by which its crew must be told, where it moves on a date and its lead is given.
     pub book_by: Option<NaiveDate>,
@@ -260,7 +261,7 @@ pub fn outcome(setup: &Setup, run: &Run) -> Outcome {
         exhausted,
         exhausted_until,
         reached,
-        gates: gates::lives(site, days),
+        gates: gates::lives(site, run),
         calendar: gates::moves(site, run),
         targets,
         score: Score::of(setup, run),

@@ -54,7 +54,7 @@ impl Skies {
     /// Where neither tells every day, and the river has a given equilibrium and exchange, those hold on all days.
     ///
     /// # Errors
-    /// The first day without air, in words.
+    /// The first day without air, in words; days that end before they begin.
     pub fn of_case(
         site: &Site,
         conditions: &Conditions,
@@ -62,17 +62,22 @@ impl Skies {
         from: NaiveDate,
         to: NaiveDate,
     ) -> Result<Self, String> {
+        if to < from {
+            return Err(format!("its days end on {to}, before they begin on {from}"));
+        }
         let base = |date| base(site, conditions, date);
         let airs: Option<BTreeMap<NaiveDate, Air>> =
             season(from, to).map(|date| Some((date, shifted(&base(date)?, case)))).collect();
         if let Some(mut days) = airs {
             let after = to.iter_days().skip(1).take(AFTER_DAYS);
             days.extend(after.map_while(|date| Some((date, shifted(&base(date)?, case)))));
-            let told = conditions.weather.days.range(from..=to).next_back().map(|(date, _)| *date);
-            let from = match told {
-                Some(last) if last == to => "the weather file".to_owned(),
-                Some(last) => format!("the weather file to {last}, then the figures of the months"),
-                None => "the figures of the months".to_owned(),
+            let told = conditions.weather.days.range(from..=to).count();
+            let from = match (told, season(from, to).count()) {
+                (0, _) => "the figures of the months".to_owned(),
+                (told, all) if told == all => "the weather file".to_owned(),
+                (told, all) => {
+                    format!("the weather file on {told} of {all} days, else the figures of the months")
+                }
             };
             return Ok(Self::under(site, conditions, case.clone(), days, from));
         }
@@ -98,6 +103,9 @@ impl Skies {
         else {
             return Vec::new();
         };
+        if to < from {
+            return Vec::new();
+        }
         let of_year = |year: i32| {
             let of = |date: NaiveDate| {
                 let there = date.year() - from.year() + year;

@@ -12,7 +12,7 @@ use crate::units::say;
 use super::balance::Balance;
 use super::layers::Layers;
 use super::skies::Sky;
-use super::surface::Through;
+use super::surface::{HEAT_J_M3_C, Through};
 use super::{diffusion, inflow, mixing, outflow, oxygen, reshape, surface};
 
 /// Water that enters the pool on a day.
@@ -121,10 +121,11 @@ pub fn day(
         let left = outflow::take(&mut now, &drawings, seconds, &mut drawn).map_err(fails)?;
         balance.water_m3.release -= left.volume_m3;
         balance.heat_j.release -= left.heat_j;
-        let through = air_and_stir(&mut now, site, forcing.sky.as_ref(), seconds, &mut overturned);
+        let mut through = air_and_stir(&mut now, site, forcing.sky.as_ref(), seconds, &mut overturned);
+        let top_m3 = site.pool.volume_m3(site.pool.top_m()) - site.pool.volume_m3(site.pool.bed_m);
+        keep_dew_out(&mut now, &mut through, top_m3);
         balance.water_m3.surface += through.water_m3;
         balance.heat_j.surface += through.heat_j;
-        let top_m3 = site.pool.volume_m3(site.pool.top_m()) - site.pool.volume_m3(site.pool.bed_m);
         let over_m3 = now.volume_m3() - top_m3;
         if over_m3 > MOST_OPEN * top_m3 {
             let (over, top) = (say::m3(over_m3, 0), say::m(site.pool.top_m(), 2));
@@ -143,6 +144,17 @@ pub fn day(
         .collect();
     *layers = now;
     Ok(Stepped { drawn, balance, overturned, steps })
+}
+
+/// Takes the dew of a sub-step that finds no room below the top of the table out of the surface layer again (choice):
+/// a pool held there would else end the season by some cubic metres.
+fn keep_dew_out(now: &mut Layers, through: &mut Through, top_m3: f64) {
+    let no_room_m3 = (now.volume_m3() - top_m3).min(through.water_m3);
+    if let Some(surface) = now.layers.last_mut().filter(|_| no_room_m3 > 0.0) {
+        surface.volume_m3 -= no_room_m3;
+        through.water_m3 -= no_room_m3;
+        through.heat_j -= HEAT_J_M3_C * no_room_m3 * surface.temperature_c;
+    }
 }
 
 /// What follows inflow and release: the surface, what stirs, what creeps, what breathes.

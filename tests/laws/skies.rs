@@ -72,7 +72,25 @@ fn law_without_a_shift_the_air_is_that_of_the_file_then_of_the_months() {
         );
     }
     assert!(matches!(skies.site.river.as_ref().unwrap().surface, Some(Surface::File(_))));
-    assert_eq!(skies.from, "the weather file to 2026-08-05, then the figures of the months");
+    assert_eq!(skies.from, "the weather file on 4 of 91 days, else the figures of the months");
+    // a file that tells the last day and lacks one before it tells one day less
+    let told = |gone| {
+        let conditions =
+            Conditions { weather: record("2026-08-01", "2026-08-09", gone), ..Conditions::default() };
+        Skies::of_case(&dam, &conditions, &case(0.0, 1.0), day("2026-08-02"), day("2026-08-09")).unwrap().from
+    };
+    assert_eq!(told(""), "the weather file");
+    assert_eq!(told("2026-08-04"), "the weather file on 7 of 8 days, else the figures of the months");
+}
+
+#[test]
+fn law_days_that_end_before_they_begin_have_no_air() {
+    let conditions = Conditions { weather: record("2026-08-01", "2026-08-05", ""), ..Conditions::default() };
+    let (from, to) = (day("2026-08-03"), day("2025-11-30"));
+    let found = Skies::of_case(&dam(MONTHS), &conditions, &case(0.0, 1.0), from, to);
+    assert_eq!(found.unwrap_err(), "its days end on 2025-11-30, before they begin on 2026-08-03");
+    let years = Skies::of_years(&dam(MONTHS), &conditions, &conditions.weather, from, to);
+    assert!(years.is_empty(), "a year of no day is no case");
 }
 
 #[test]
