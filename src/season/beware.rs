@@ -9,59 +9,105 @@ use crate::profile::LAYERED_C;
 use crate::site::Site;
 use crate::units::say;
 
-use super::gates::mornings_m;
+use super::ahead;
 use super::layers::Layers;
 use super::outcome::{StageFall, Stopping};
-use super::run::{Run, SeasonDay};
+use super::run::{Run, SeasonDay, Setup};
 
 /// Hours over which a change of the release is made where the site does not say (choice, as its limits take it).
 const CHANGE_HOURS: f64 = 1.0;
-/// Fall of a day beyond its limit that is not told, m (choice): what evaporates on one day is made good on the next,
-/// so that a plan at its limit falls by some millimetres more or less.
-const FALL_SLACK_M: f64 = 0.01;
+
+/// A cast that lies this near to the plan lies on it, m (choice: wind and waves move a gauge as much).
+const OFF_PLAN_M: f64 = 0.1;
+/// A pool that falls by no more than this beyond its limit keeps it, m (choice: what evaporates on one day is made good
+/// on the next).
+const FALL_M: f64 = 0.01;
+/// A release this near to its bound keeps it, as a share of it (choice: the same).
+const RELEASE_SHARE: f64 = 0.02;
 
 /// Everything to beware of, by kind.
-pub(super) fn warnings(site: &Site, run: &Run) -> Vec<Stopping> {
-    [deep_water(run), drawdown(site, run)].into_iter().flatten().collect()
+pub(super) fn warnings(setup: &Setup, site: &Site, run: &Run) -> Vec<Stopping> {
+    let [too_little, too_much] = releases(site, &run.days);
+    [off_plan(setup, site, run), too_little, too_much, deep_water(run), drawdown(site, run)]
+        .into_iter()
+        .flatten()
+        .collect()
 }
 
-/// Water with hardly any oxygen that comes into the release, where there was none or less of it at the season's start.
+/// A cast whose pool is not the plan's.
+fn off_plan(setup: &Setup, site: &Site, run: &Run) -> Option<Stopping> {
+    let (above_m, until) = ahead::off_plan(setup, run.start.pool_m(&site.pool))?;
+    if above_m.abs() < OFF_PLAN_M {
+        return None;
+    }
+    let side = if above_m > 0.0 { "above" } else { "below" };
+    let words = format!(
+        "the pool of the cast lies {} {side} the plan; it is brought to it in a straight line by {until}, and the release \
+         of the days until then makes up for it",
+        say::m(above_m.abs(), 2)
+    );
+    Some(Stopping { date: setup.begins, kind: "off-plan", words })
+}
+
+/// Days on which less than the least release of the site leaves, and on which more than the greatest does.
+fn releases(site: &Site, days: &[SeasonDay]) -> [Option<Stopping>; 2] {
+    let of = |bound: Option<f64>, kind, side, beyond: fn(f64, f64) -> bool| {
+        let bound_m3s = bound?;
+        let over = || days.iter().filter(|day| beyond(day.release.flow_m3s, bound_m3s));
+        let first = over().next()?;
+        let farthest =
+            over().map(|day| day.release.flow_m3s).reduce(|a, b| if beyond(a, b) { a } else { b })?;
+        let words = format!(
+            "what the plan releases in this case is {side} {kind} {} on {} of {} days, first on this one, at worst {}",
+            say::m3s(bound_m3s, 1),
+            over().count(),
+            days.len(),
+            say::m3s(farthest, 1)
+        );
+        Some(Stopping { date: first.date, kind, words })
+    };
+    let under = |flow: f64, min: f64| flow < min * (1.0 - RELEASE_SHARE);
+    let above = |flow: f64, max: f64| flow > max * (1.0 + RELEASE_SHARE);
+    [
+        of(site.release.min_m3s, "release.min", "below", under),
+        of(site.release.max_m3s, "release.max", "above", above),
+    ]
+}
+
+/// Water with hardly any oxygen that comes into the release, where there was hardly any of it on the first day, or much
+/// less.
 fn deep_water(run: &Run) -> Option<Stopping> {
     let began = run.days.first()?.release.oxygen_low_share;
     let most = if began > LOW_OXYGEN_SHARE { began + LOW_OXYGEN_SHARE } else { LOW_OXYGEN_SHARE };
     let first = run.days.iter().find(|day| day.release.oxygen_low_share > most)?;
     let words = format!(
-        "{:.0} % of the release comes from water with less than 1 mg/L of oxygen, on the first day of the season it \
-         was {:.0} %: hydrogen sulphide, iron and manganese can come with it and take up oxygen below the dam; they \
-         are not computed",
+        "{:.0} % of the release comes from water with less than 1 mg/L of oxygen, against {:.0} % on the first day: \
+         hydrogen sulphide, iron and manganese can come with it and take up oxygen below the dam; they are not computed",
         100.0 * first.release.oxygen_low_share,
         100.0 * began
     );
     Some(Stopping { date: first.date, kind: "deep-water", words })
 }
 
-/// The first day on which the pool falls faster than the site allows, how many there are, and the fastest.
+/// The first day on which the pool falls faster than the site allows, and the fastest.
 fn drawdown(site: &Site, run: &Run) -> Option<Stopping> {
     let most_m = site.limits.drawdown_m_per_day?;
-    let too_fast: Vec<(NaiveDate, f64)> =
-        falls(site, run).filter(|(_, fall_m)| *fall_m > most_m + FALL_SLACK_M).collect();
-    let (date, _) = *too_fast.first()?;
-    let fastest_m = too_fast.iter().fold(0.0, |fastest: f64, (_, fall_m)| fastest.max(*fall_m));
-    let days = match too_fast.len() {
-        1 => "on this day".to_owned(),
-        days => format!("first on this day, on {days} days in all"),
-    };
+    let over: Vec<(NaiveDate, f64)> = falls(site, run).filter(|fall| fall.1 > most_m + FALL_M).collect();
+    let fastest_m = over.iter().map(|fall| fall.1).fold(0.0, f64::max);
     let words = format!(
-        "the pool falls by more than the {} that limits.max_drawdown_per_day allows {days}, by up to {}",
+        "the pool falls by more than {} on {} of {} days, first on this one, by up to {}",
         say::m(most_m, 2),
+        over.len(),
+        run.days.len(),
         say::m(fastest_m, 2)
     );
-    Some(Stopping { date, kind: "max_drawdown_per_day", words })
+    Some(Stopping { date: over.first()?.0, kind: "max_drawdown_per_day", words })
 }
 
 /// How far the pool falls on each day, m.
 fn falls<'a>(site: &'a Site, run: &'a Run) -> impl Iterator<Item = (NaiveDate, f64)> + 'a {
-    run.days.iter().zip(mornings_m(site, run)).map(|(day, before)| (day.date, before - day.pool_m))
+    let starts = std::iter::once(run.start.pool_m(&site.pool)).chain(run.days.iter().map(|d| d.pool_m));
+    run.days.iter().zip(starts).map(|(day, before)| (day.date, before - day.pool_m))
 }
 
 /// The fastest fall of the pool in a day, m, and when; `None` where it never falls.

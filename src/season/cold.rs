@@ -48,14 +48,14 @@ pub(super) fn left(site: &Site, cold: Option<&ColdWater>, targets: &[TargetTally
     cold.into_iter().flat_map(|cold| cold.days.iter().filter(first_of_month).map(of)).collect()
 }
 
-/// First day on which usable water colder than a reserve asks is less than it keeps, between its day of the year and
-/// the end of that year. Where no outlet is usable nothing of it is left to draw.
+/// First day on which usable water colder than a reserve asks is less than it keeps, from its day of the year to the end
+/// of the season. Where no outlet is usable nothing of it is left to draw.
 pub(super) fn under(reserve: &Reserve, cold: &ColdWater) -> Exhausted {
     let Some(last) = cold.days.last() else {
         return Exhausted::Unknown("the season has no day".to_owned());
     };
     let holds = |day: &&ColdDay| YearDay { month: day.date.month(), day: day.date.day() } >= reserve.from;
-    let mut kept = cold.days.iter().filter(holds).peekable();
+    let mut kept = cold.days.iter().skip_while(|day| !holds(day)).peekable();
     if kept.peek().is_none() {
         return Exhausted::Unknown(format!(
             "the reserve begins on {:02}-{:02}, after the season",

@@ -4,15 +4,15 @@
 
 use chrono::NaiveDate;
 
-use crate::mix::limits::{self, Before, Check, Move, Moves, Rule};
+use crate::mix::limits::{self, Before, Check, Move, Moves};
 use crate::mix::{Asked, Day, Drawn, Setting, checks};
 use crate::profile::Profile;
 use crate::rank::{
-    Criterion, Extreme, Full, Order, Progress, Question, Ranked, Ranking, Stopped, rank_roughly,
+    Criterion, Extreme, Full, Idea, Order, Progress, Question, Ranking, Stopped, rank_roughly,
 };
 use crate::site::{Outlet, SAME_OPENING, Site};
 
-use super::refine::refined;
+use super::refine::{Side, reach_c, refined};
 use super::set::{Flowing, flowing};
 
 /// Steps the release is cut into (choice: splits of a tenth).
@@ -93,15 +93,6 @@ pub(super) struct Chosen {
     pub(super) past: Vec<Check>,
 }
 
-/// What could be set, ranked.
-struct Ways {
-    ranking: Ranking,
-    /// Whether the limits of the change are let go, since no mix keeps them.
-    is_free: bool,
-    /// Coldest and warmest mix, those limits let go.
-    reach: Option<[Extreme; 2]>,
-}
-
 /// Why there is no mix.
 #[derive(Debug, Clone, PartialEq)]
 pub(super) enum NoMix {
@@ -127,68 +118,82 @@ impl Choice<'_> {
     /// The best mix of the day: of the first mixes of the ranking that keep every limit in full, each refined, the one
     /// that comes first in the order, then the nearer to what is wanted.
     pub(super) fn best(&self, progress: Progress) -> Result<Chosen, NoMix> {
-        let ways = self.ranked(progress)?;
-        let Ways { ranking, is_free, .. } = &ways;
         let order = Order::of(&self.question(self.site));
-        let kept = ranking.ideas(TRIED).into_iter().filter_map(|idea| {
-            let plain = self.tried(idea.best.asked.first()?, &order)?;
-            plain.keeps(*is_free).then_some(plain)
-        });
+        let free = self.ranked(false, progress)?;
+        let first = self.kept(&free, &order, true);
+        // the first of all that keeps the limits of the change is the first of those that keep them
+        let kept = if first.first().is_some_and(|tried| tried.keeps(false)) {
+            first.into_iter().filter(|tried| tried.keeps(false)).collect()
+        } else {
+            let narrowed = if first.is_empty() { None } else { Some(self.ranked(true, progress)?) };
+            let strict = narrowed.map_or_else(Vec::new, |ranking| self.kept(&ranking, &order, false));
+            if strict.is_empty() { first } else { strict }
+        };
+        let is_free = !kept.first().is_some_and(|tried| tried.keeps(false));
         let mut found: Vec<Tried> = Vec::new();
-        for plain in kept.take(REFINED) {
-            let better = refined(self, &plain, &order).filter(|tried| tried.keeps(*is_free));
+        for plain in kept.into_iter().take(REFINED) {
+            let better = refined(self, &plain, &order).filter(|tried| tried.keeps(is_free));
             found.push(plain);
             found.extend(better);
         }
         let first = found.into_iter().reduce(|best, other| if other.before(&best) { other } else { best });
-        first.map_or_else(|| Err(none_allowed(self.site, ranking)), |best| Ok(self.chosen(best, &ways)))
+        first.map_or_else(|| Err(none_allowed(self.site, &free)), |best| Ok(self.chosen(best, &free, &order)))
+    }
+
+    /// The best mix of each of the first ideas of a ranking that keeps every limit in full, in their order.
+    fn kept(&self, ranking: &Ranking, order: &Order, is_free: bool) -> Vec<Tried> {
+        let tried = |idea: Idea| self.tried(idea.best.asked.first()?, order);
+        let ideas = ranking.ideas(TRIED).into_iter();
+        ideas.filter_map(tried).filter(|tried| tried.keeps(is_free)).collect()
     }
 
     /// Every mix allowed at splits of a tenth, where each set of open outlets allows no more than one and they are no
     /// more than `most`: then each is worth following for itself.
     pub(super) fn every(&self, most: usize, progress: Progress) -> Result<Option<Vec<Chosen>>, NoMix> {
-        let ways = self.ranked(progress)?;
-        let Ways { ranking, is_free, .. } = &ways;
-        if ranking.allowed != ranking.mixes.len() as u64 || ranking.mixes.len() > most {
+        let order = Order::of(&self.question(self.site));
+        let free = self.ranked(false, progress)?;
+        let is_few =
+            |ranking: &Ranking| ranking.allowed == ranking.mixes.len() as u64 && ranking.mixes.len() <= most;
+        let narrowed = if is_few(&free) { None } else { Some(self.ranked(true, progress)?) };
+        let ranking = narrowed.as_ref().filter(|ranking| !ranking.mixes.is_empty()).unwrap_or(&free);
+        if !is_few(ranking) {
             return Ok(None);
         }
-        let order = Order::of(&self.question(self.site));
         let tried = ranking.mixes.iter().filter_map(|mix| self.tried(mix.asked.first()?, &order));
-        let all: Vec<Chosen> = tried.filter(|t| t.keeps(*is_free)).map(|t| self.chosen(t, &ways)).collect();
-        if all.is_empty() { Err(none_allowed(self.site, ranking)) } else { Ok(Some(all)) }
+        let all: Vec<Tried> = tried.filter(|tried| tried.keeps(true)).collect();
+        let is_free = !all.iter().any(|tried| tried.keeps(false));
+        let kept = all.into_iter().filter(|tried| tried.keeps(is_free));
+        let every: Vec<Chosen> = kept.map(|tried| self.chosen(tried, &free, &order)).collect();
+        if every.is_empty() { Err(none_allowed(self.site, &free)) } else { Ok(Some(every)) }
     }
 
     /// What is set whatever the ranking says, with what could be reached instead.
     pub(super) fn given(&self, asked: &Asked, progress: Progress) -> Result<Chosen, NoMix> {
-        let ways = self.ranked(progress)?;
+        let free = self.ranked(false, progress)?;
         let order = Order::of(&self.question(self.site));
         let tried = self.tried(asked, &order);
-        tried.map(|tried| self.chosen(tried, &ways)).ok_or_else(|| none_allowed(self.site, &ways.ranking))
+        tried.map(|tried| self.chosen(tried, &free, &order)).ok_or_else(|| none_allowed(self.site, &free))
     }
 
-    /// What could be set, ranked. Gates stand shut, as they stand, or as wide as they go; where that allows no mix, in any
-    /// of their positions.
-    fn ranked(&self, progress: Progress) -> Result<Ways, NoMix> {
+    /// What could be set, ranked, with the limits of the change or without: what those keep from one day can be reached
+    /// in several. Gates stand shut, as they stand, or as wide as they go; where that allows no mix, in any of their
+    /// positions.
+    fn ranked(&self, with_change: bool, progress: Progress) -> Result<Ranking, NoMix> {
         let ranked = |site: &Site| {
             rank_roughly(&self.question(site), progress).map_err(|stopped| match stopped {
                 Stopped::Cancelled => NoMix::Cancelled,
                 Stopped::Refused(problem) => NoMix::Allowed(None, problem.words),
             })
         };
-        let coarse = with_fewer_positions(self.site, self.now);
-        for site in coarse.iter().chain([self.site]) {
-            let ranking = ranked(site)?;
-            if ranking.mixes.is_empty() {
-                continue;
+        let free = if with_change { None } else { Some(without_change(self.site)) };
+        let site = free.as_ref().unwrap_or(self.site);
+        if let Some(coarse) = with_fewer_positions(site, self.now) {
+            let ranking = ranked(&coarse)?;
+            if !ranking.mixes.is_empty() {
+                return Ok(ranking);
             }
-            // what the limits of the change keep from one day can be reached in several
-            let is_narrowed = ranking.rejected.iter().any(|r| is_of_change(r.check.rule));
-            let free = if is_narrowed { Some(ranked(&without_change(site))?) } else { None };
-            let reach = free.unwrap_or_else(|| ranking.clone()).attainable_c;
-            return Ok(Ways { ranking, is_free: false, reach });
         }
-        let ranking = ranked(&without_change(self.site))?;
-        Ok(Ways { reach: ranking.attainable_c.clone(), ranking, is_free: true })
+        ranked(site)
     }
 
     fn question<'b>(&'b self, site: &'b Site) -> Question<'b> {
@@ -236,14 +241,15 @@ impl Choice<'_> {
         })
     }
 
-    fn extremes_c(&self, reach: Option<&[Extreme; 2]>) -> Option<[f64; 2]> {
-        let in_full = |mix: &Ranked| Some(self.flowing(mix.asked.first()?)?.release.temperature_c);
-        let [coldest, warmest] = reach?.each_ref().map(|e| in_full(&e.mix));
-        Some([coldest?, warmest?])
+    /// Coldest and warmest release of a ranking, C.
+    fn extremes_c(&self, ranking: &Ranking, order: &Order) -> Option<[f64; 2]> {
+        let [coldest, warmest] = ranking.attainable_c.as_ref()?;
+        let in_full = |extreme: &Extreme, side| reach_c(self, extreme.mix.asked.first()?, side, order);
+        Some([in_full(coldest, Side::Colder)?, in_full(warmest, Side::Warmer)?])
     }
 
-    fn chosen(&self, tried: Tried, ways: &Ways) -> Chosen {
-        let extremes = self.extremes_c(ways.reach.as_ref());
+    fn chosen(&self, tried: Tried, free: &Ranking, order: &Order) -> Chosen {
+        let extremes = self.extremes_c(free, order);
         // what is chosen is attainable: it may lie a hair beyond what splits of a tenth give
         let attainable_c =
             extremes.map(|[low, high]| [low.min(tried.temperature_c), high.max(tried.temperature_c)]);
@@ -284,20 +290,6 @@ fn with_fewer_positions(site: &Site, now: Option<&Setting>) -> Option<Site> {
     }
     let positions = |site: &Site| site.outlets.iter().map(|o| o.positions.len()).sum::<usize>();
     (positions(&coarse) < positions(site)).then_some(coarse)
-}
-
-/// Whether a limit is one of the change, which [`without_change`] lets go.
-fn is_of_change(rule: Rule) -> bool {
-    matches!(
-        rule,
-        Rule::MaxMoves
-            | Rule::MaxCrewHours
-            | Rule::FlowChangePerHour
-            | Rule::FlowChangePerDay
-            | Rule::TemperatureChangePerHour
-            | Rule::TemperatureChangePerDay
-            | Rule::MovesUnderFlow
-    )
 }
 
 /// The site without its limits of a change: moves, crew hours, rates, gates not to be moved under flow.

@@ -20,6 +20,9 @@ const MOST_DECISIONS: usize = 8;
 /// Most decisions followed in all (choice: minutes of one core); a season that takes more is searched by aims.
 const MOST_FOLLOWED: usize = 20_000;
 
+/// Share of the work that the season day by day counts for (choice).
+const DAILY_SHARE: f64 = 0.05;
+
 /// What stands in the way of following every mix.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub(super) enum Stop {
@@ -43,12 +46,12 @@ pub(super) fn exact(daily: &Setup, count: usize, progress: Progress) -> Result<R
     }
     let going = Going::new(daily).ok_or(Stop::Cancelled)?;
     // a larger season shows it at its first decision, before any is run
-    let mut walk = Walk { daily, best: None, followed: 0, progress };
+    let mut walk = Walk { daily, best: None, followed: 0, done: 0.0, progress };
     let first = walk.next_choice(going.clone())?.ok_or(Stop::TooLarge)?;
-    let mut run = going.finished(progress).ok_or(Stop::Cancelled)?;
+    let mut run = going.finished(&|done| progress(DAILY_SHARE * done)).ok_or(Stop::Cancelled)?;
     run.aims = Some(Arc::new(vec![0.0; count]));
     walk.best = Some((Score::of(daily, &run), run));
-    walk.branches(first)?;
+    walk.branches(first, (DAILY_SHARE, 1.0 - DAILY_SHARE))?;
     let (_, run) = walk.best.ok_or(Stop::Cancelled)?;
     Ok(Run { strategy: Strategy::Thrift.name().to_owned(), ..run })
 }
@@ -57,6 +60,8 @@ struct Walk<'a> {
     daily: &'a Setup<'a>,
     best: Option<(Score, Run)>,
     followed: usize,
+    /// Share of the work done: of each fork of the tree the branches left behind.
+    done: f64,
     progress: Progress<'a>,
 }
 
@@ -76,11 +81,11 @@ impl<'a> Walk<'a> {
             if self.followed > MOST_FOLLOWED {
                 return Err(Stop::TooLarge);
             }
-            // how far it is nobody knows beforehand
-            if (self.progress)(0.0).is_break() {
+            let done = self.done;
+            if (self.progress)(done).is_break() {
                 return Err(Stop::Cancelled);
             }
-            let quiet = |_: f64| (self.progress)(0.0);
+            let quiet = |_: f64| (self.progress)(done);
             match going.every(&morning, why, MOST_MIXES, &quiet) {
                 Ok(Some(every)) => {
                     let choices = every.into_iter().map(|decision| {
@@ -99,14 +104,16 @@ impl<'a> Walk<'a> {
         Ok(None)
     }
 
-    /// Follows seasons under way to their ends.
-    fn branches(&mut self, choices: Choices<'a>) -> Result<(), Stop> {
-        for going in choices {
+    /// Follows seasons under way to their ends: this much of the work from so much on.
+    fn branches(&mut self, choices: Choices<'a>, (from, all): (f64, f64)) -> Result<(), Stop> {
+        let each = all / choices.len().max(1) as f64;
+        for (i, going) in choices.into_iter().enumerate() {
+            self.done = from + i as f64 * each;
             if self.is_beaten(&going.run) {
                 continue;
             }
             if let Some(next) = self.next_choice(going)? {
-                self.branches(next)?;
+                self.branches(next, (self.done, each))?;
             }
         }
         Ok(())

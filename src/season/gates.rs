@@ -35,25 +35,24 @@ pub(super) fn usable(site: &Site, outlet: usize, pool_m: f64, date: NaiveDate) -
     told
 }
 
-/// The pool on the morning of each day, m: what is decided and looked at on that day is so under it.
-pub(super) fn mornings_m<'a>(site: &'a Site, run: &'a Run) -> impl Iterator<Item = f64> + 'a {
-    std::iter::once(run.start.pool_m(&site.pool)).chain(run.days.iter().map(|day| day.pool_m))
-}
-
 /// The stretches of the season in which each outlet can be used, by outlet; one that never can has one without days.
+///
+/// A day is judged under the pool of its morning, as what is set on it is.
 pub(super) fn lives(site: &Site, run: &Run) -> Vec<GateLife> {
     (0..site.outlets.len()).flat_map(|outlet| lives_of(site, run, outlet)).collect()
 }
 
 fn lives_of(site: &Site, run: &Run, outlet: usize) -> Vec<GateLife> {
+    let days = &run.days;
+    let mornings = std::iter::once(run.start.pool_m(&site.pool)).chain(days.iter().map(|day| day.pool_m));
     let mut out: Vec<GateLife> = Vec::new();
     let mut before: Option<NaiveDate> = None;
     let mut barred: Option<Check> = None;
-    let reason = |check: &Check| (check.rule.name(), check.words(site));
-    for (day, morning_m) in run.days.iter().zip(mornings_m(site, run)) {
-        match (usable(site, outlet, morning_m, day.date), before) {
+    for (day, pool_m) in days.iter().zip(mornings) {
+        let reason = |check: &Check| (check.rule.name(), check.words(site));
+        match (usable(site, outlet, pool_m, day.date), before) {
             (Ok(()), None) => {
-                let reason = barred.take().map(|check| reason(&check));
+                let reason = barred.as_ref().map(reason);
                 out.push(GateLife { first_day: Some(day.date), reason, ..GateLife::never(outlet) });
                 before = Some(day.date);
             }
@@ -62,8 +61,7 @@ fn lives_of(site: &Site, run: &Run, outlet: usize) -> Vec<GateLife> {
                 if let (Some(last), Some(life)) = (last, out.last_mut()) {
                     life.last_day = Some(last);
                     life.reason = Some(reason(&check));
-                    let open = open_on(&run.days, outlet, last);
-                    life.book_by = open.then(|| lead(site, outlet, last)).flatten();
+                    life.book_by = open_on(days, outlet, last).then(|| lead(site, outlet, last)).flatten();
                 }
                 before = None;
                 barred = Some(check);
@@ -71,7 +69,8 @@ fn lives_of(site: &Site, run: &Run, outlet: usize) -> Vec<GateLife> {
         }
     }
     if out.is_empty() {
-        out.push(GateLife { reason: barred.map(|check| reason(&check)), ..GateLife::never(outlet) });
+        let reason = barred.map(|check| (check.rule.name(), check.words(site)));
+        out.push(GateLife { reason, ..GateLife::never(outlet) });
     }
     out
 }

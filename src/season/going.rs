@@ -6,13 +6,13 @@ use std::sync::Arc;
 
 use chrono::{NaiveDate, NaiveTime};
 
+use crate::intake;
 use crate::mix::limits::{Before, Check, Moves};
-use crate::mix::{Asked, Blend, Day, checks, groups, release};
+use crate::mix::{Asked, Blend, Day, Setting, checks, groups, release};
 use crate::profile::{Column, Profile};
 use crate::rank::Progress;
 use crate::river::{self, Figures};
 use crate::site::Site;
-use crate::target::DAM;
 
 use super::ahead::{ahead, forcing};
 use super::aims::asking;
@@ -22,7 +22,7 @@ use super::plan::PlanDay;
 use super::run::{Ended, Run, SeasonDay, Setup};
 use super::set::{Flowing, flowing};
 use super::step::day;
-use super::strategy::{Wants, is_due, name, wants};
+use super::strategy::{Wants, is_due, name, set_by, wants};
 
 /// Length of the day, s; exact.
 const DAY_S: f64 = 86_400.0;
@@ -72,9 +72,7 @@ impl<'a> Going<'a> {
         // how much leaves in all, and how far the pool falls, is the plan's: no mix changes it
         (site.release.min_m3s, site.release.max_m3s, site.limits.drawdown_m_per_day) = (None, None, None);
         let layers = Layers::of_profile(&site, setup.start, site.season.layer_m)?;
-        let rules = site.targets.iter().map(|t| t.point.as_str());
-        let mut points = rules.chain(site.season.stages.iter().map(|s| s.point.as_str()));
-        let to_the_points = site.river.is_some() && points.any(|point| point != DAM);
+        let to_the_points = site.river.as_ref().is_some_and(|river| !river.points.is_empty());
         let run = Run {
             plan: setup.plan.name.clone(),
             case: setup.skies.case.name.clone(),
@@ -112,10 +110,29 @@ impl<'a> Going<'a> {
     /// Goes through the days that are left. `None` where the caller stops it.
     pub(super) fn finished(mut self, progress: Progress) -> Option<Run> {
         while self.is_on() {
+            let done = self.share_done();
+            if progress(done).is_break() {
+                return None;
+            }
+            // whoever looks on is not told how far a single decision is
+            self.next_day(&|_| progress(done))?;
+        }
+        Some(self.run)
+    }
+
+    /// Goes through days that have passed: by the schedule, else by what is set now, whatever limit stood against it.
+    pub(super) fn as_it_was(mut self, progress: Progress) -> Option<Run> {
+        while self.is_on() {
             if progress(self.share_done()).is_break() {
                 return None;
             }
-            self.next_day(progress)?;
+            let date = self.ahead.get(self.run.days.len()).map(|plan| plan.date);
+            if let Some(gates) = date.and_then(|date| set_by(self.setup, date)) {
+                self.asked = Some(Asked::of(&self.site, &Setting::of(gates.clone())));
+            }
+            if let Some(morning) = self.morning() {
+                self.pass(morning, None);
+            }
         }
         Some(self.run)
     }
@@ -138,11 +155,13 @@ impl<'a> Going<'a> {
         self.site.inflow_m3s = Some(plan.inflow_m3s);
         let release_m3s = self.release_m3s(&plan);
         if release_m3s <= 0.0 {
-            self.end(
-                plan.date,
-                "nothing is left to release: the pool is to rise by all that comes in".into(),
-                None,
-            );
+            let words = if plan.release_m3s.is_some() {
+                "the plan releases nothing, and a day without a release is not computed"
+            } else {
+                "nothing is left to release: the pool is to rise by all that comes in, and a day without a release is \
+                 not computed"
+            };
+            self.end(plan.date, words.into(), None);
             return None;
         }
         let at = plan.date.and_time(NaiveTime::MIN).and_local_timezone(self.site.offset).single();
@@ -159,8 +178,9 @@ impl<'a> Going<'a> {
 
     /// What a day is to release, m3/s.
     fn release_m3s(&self, plan: &PlanDay) -> f64 {
+        let pool = &self.site.pool;
         let by_pool = |to_m: f64| {
-            let gain_m3 = self.site.pool.volume_m3(to_m) - self.layers.volume_m3();
+            let gain_m3 = pool.volume_m3(to_m) - pool.volume_m3(pool.bed_m) - self.layers.volume_m3();
             (plan.inflow_m3s - gain_m3 / DAY_S).max(0.0)
         };
         plan.release_m3s.or_else(|| plan.pool_m.map(by_pool)).unwrap_or_default()
@@ -207,13 +227,20 @@ impl<'a> Going<'a> {
         let found = wanted.and_then(|asked| Some((flows(&asked)?, asked)));
         match found {
             Some(((_, None), asked)) => {
-                let asked = asked.at_release(&self.site, morning.release_m3s, morning.profile.pool_m);
-                let chosen = self.on(morning, 0.0, |choice| choice.given(&asked, progress))?;
-                Ok(decision(date, why, chosen))
+                let scaled = asked.at_release(&self.site, morning.release_m3s, morning.profile.pool_m);
+                let chosen = self.on(morning, 0.0, |choice| choice.given(&scaled, progress))?;
+                // a flood may leave its gates nothing to pass: they are kept as they were asked
+                let is_left = scaled.totals.iter().any(|total| total.1 > 0.0)
+                    || scaled.direct.iter().any(|g| g.flow_m3s > 0.0 && !self.spills(g.outlet));
+                Ok(decision(date, why, if is_left { chosen } else { Chosen { asked, ..chosen } }))
             }
             Some(((_, Some(check)), _)) => self.best(morning, Why::Forced(check), 0.0, progress),
             None => self.best(morning, why, 0.0, progress),
         }
+    }
+
+    fn spills(&self, outlet: usize) -> bool {
+        self.site.outlets.get(outlet).is_some_and(intake::spills_by_itself)
     }
 
     fn best(&self, morning: &Morning, why: Why, aim: f64, progress: Progress) -> Result<Decision, NoMix> {
@@ -290,7 +317,7 @@ impl<'a> Going<'a> {
         });
     }
 
-    /// What arrives at the points of the river, where any is spoken of.
+    /// What arrives at the points of the river, where there are any.
     fn arriving(&self, date: NaiveDate, release: &Blend) -> Option<Vec<Figures>> {
         let part = river::Part {
             hours: 24.0,

@@ -89,6 +89,36 @@ pub struct Learned {
     pub at_end: Vec<&'static str>,
 }
 
+/// One knob of what was learned.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Fitted {
+    /// What it is called.
+    pub name: &'static str,
+    /// Its value before.
+    pub before: f64,
+    /// Its value found.
+    pub after: f64,
+    /// The published range it was sought in.
+    pub range: [f64; 2],
+    /// Whether it ended at an end of it.
+    pub at_end: bool,
+}
+
+impl Learned {
+    /// The knobs that were fitted, the oxygen's where the casts have it.
+    pub fn each(&self) -> Vec<Fitted> {
+        let with_oxygen = self.fitted.iter().chain(&self.tested).all(|a| a.oxygen_mg_l.is_some());
+        let one = |knob: &Knob| Fitted {
+            name: knob.name,
+            before: *(knob.of)(&mut self.before.clone()),
+            after: *(knob.of)(&mut self.knobs.clone()),
+            range: knob.range,
+            at_end: self.at_end.contains(&knob.name),
+        };
+        WARMTH.iter().chain(BREATH.iter().filter(|_| with_oxygen)).map(one).collect()
+    }
+}
+
 /// A knob that is fitted.
 struct Knob {
     name: &'static str,

@@ -79,8 +79,7 @@ pub struct GateLife {
     pub first_day: Option<NaiveDate>,
     /// Last day in a row from then; `None` while it can be used to the end.
     pub last_day: Option<NaiveDate>,
-    /// Why not after the last; where it can be used to the end, why not before the first; by the name of the limit
-    /// and in words.
+    /// Why not after the last, and without one why not before the first, by the name of the limit and in words.
     pub reason: Option<(&'static str, String)>,
     /// The day by which its crew must be told, where it moves on a date and its lead is given.
     pub book_by: Option<NaiveDate>,
@@ -195,6 +194,8 @@ pub struct Outcome {
     pub left: Vec<Left>,
     /// First day of decision on which no allowed mix reaches the high of the target at the required release.
     pub exhausted: Exhausted,
+    /// Last day of decision of that stretch: of those on which a rule asks.
+    pub exhausted_last: Option<NaiveDate>,
     /// First day of decision after it on which one does again.
     pub exhausted_until: Option<NaiveDate>,
     /// First day under a reserve of the site; `None` where it has none.
@@ -228,7 +229,7 @@ pub struct Outcome {
     pub stage_falls: Vec<StageFall>,
     /// The largest errors of the balances of water and of heat, over their largest term.
     pub errors: (f64, f64),
-    /// Deep water newly drawn, a pool that falls too fast.
+    /// A cast off its plan, releases beyond their bounds, deep water newly drawn, a pool that falls too fast.
     pub warnings: Vec<Stopping>,
 }
 
@@ -249,7 +250,7 @@ pub fn outcome(setup: &Setup, run: &Run) -> Outcome {
         })
         .collect();
     let reached = reached::reached(setup, site, run);
-    let (exhausted, exhausted_until) = reached::exhausted(&reached, run);
+    let out_of_reach = reached::exhausted(&reached, run);
     let targets = tallies(site, &setup.skies.conditions, days);
     let cold: Vec<ColdWater> = site.cold_water_c.iter().map(|&c| colder(c)).collect();
     let largest = |of: fn(&SeasonDay) -> f64| days.iter().map(of).fold(0.0, f64::max);
@@ -258,8 +259,9 @@ pub fn outcome(setup: &Setup, run: &Run) -> Outcome {
         cold,
         under_reserve: first(&reserves.iter().map(|r| &r.1).collect::<Vec<_>>()),
         reserves,
-        exhausted,
-        exhausted_until,
+        exhausted: out_of_reach.first,
+        exhausted_last: out_of_reach.last,
+        exhausted_until: out_of_reach.until,
         reached,
         gates: gates::lives(site, run),
         calendar: gates::moves(site, run),
@@ -277,7 +279,7 @@ pub fn outcome(setup: &Setup, run: &Run) -> Outcome {
             largest(|day| day.balance.water_m3.relative_error()),
             largest(|day| day.balance.heat_j.relative_error()),
         ),
-        warnings: beware::warnings(site, run),
+        warnings: beware::warnings(setup, site, run),
     }
 }
 
@@ -291,8 +293,8 @@ pub(super) fn season_site(setup: &Setup) -> Site {
 /// The first day of several; where none has one, the first that is not known, else the end.
 fn first(all: &[&Exhausted]) -> Option<Exhausted> {
     let on = all.iter().filter_map(|one| one.on()).min().map(Exhausted::On);
-    let not_by = || all.iter().find(|one| matches!(one, Exhausted::NotBy(_)));
-    on.or_else(|| not_by().or_else(|| all.first()).map(|one| Exhausted::clone(one)))
+    let unknown = || all.iter().find(|one| matches!(one, Exhausted::Unknown(_)));
+    on.or_else(|| unknown().or_else(|| all.first()).map(|one| Exhausted::clone(one)))
 }
 
 /// The least of the season; days of which it is not known are passed over.

@@ -20,17 +20,28 @@ pub(super) struct Drawing {
     pub(super) flows_m3s: Vec<f64>,
 }
 
-/// The zones of the levels on a column, binned onto its layers.
+/// The zones of the levels on a column, binned onto its layers. A level that the pool has sunk below since the day began
+/// (`is_later`) still gives its flow of the day, from the surface.
 ///
 /// # Errors
-/// A level that gives water and stands above it, in words.
-pub(super) fn drawings(column: &Column, levels: &[Level], edges_m: &[f64]) -> Result<Vec<Drawing>, String> {
+/// A level that gives water and stands above it as the day begins, in words.
+pub(super) fn drawings(
+    column: &Column,
+    levels: &[Level],
+    edges_m: &[f64],
+    is_later: bool,
+) -> Result<Vec<Drawing>, String> {
     let drawing = |level: &Level| {
         let mut flows_m3s = vec![0.0; edges_m.len().saturating_sub(1)];
         if level.sink.flow_m3s <= 0.0 {
             return Ok(Drawing { zone: None, flows_m3s });
         }
         let Some(zone) = zone(column, &level.sink, 1.0) else {
+            let is_dry = level.sink.centre_m >= column.surface_m();
+            if let (true, true, Some(surface)) = (is_later, is_dry, flows_m3s.last_mut()) {
+                *surface = level.sink.flow_m3s;
+                return Ok(Drawing { zone: None, flows_m3s });
+            }
             return Err(format!(
                 "{} is asked of the level at {}, which lies outside the water ({} to {})",
                 say::m3s(level.sink.flow_m3s, 1),

@@ -133,25 +133,6 @@ impl Plan {
     }
 }
 
-impl Schedule {
-    /// A flag where it sets nothing on the days of a season, so that they are not its: what its last change set is held
-    /// from before the first day, or its first one comes after the last.
-    pub fn outside(&self, from: NaiveDate, to: NaiveDate) -> Option<Problem> {
-        let (first, last) = (self.changes.first()?.0, self.changes.last()?.0);
-        let words = if last < from {
-            format!(
-                "its last change, of {last}, comes before the first day, {from}: what it set then is held"
-            )
-        } else if first > to {
-            format!("its first change, of {first}, comes after the last day, {to}: none is followed")
-        } else {
-            return None;
-        };
-        let cure = "correct its dates, or take the schedule of this season";
-        Some(Problem::flag("schedule-outside", words, cure).in_file(&self.file))
-    }
-}
-
 /// The last part of a path without its ending.
 fn stem(file: &str) -> &str {
     let base = file.rsplit(['/', '\\']).next().unwrap_or(file);

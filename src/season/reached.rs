@@ -44,26 +44,40 @@ fn asks(setup: &Setup, site: &Site, date: NaiveDate) -> Vec<Asks> {
     day.rules(site).iter().filter_map(of_dam).collect()
 }
 
-/// First day of decision on which no allowed mix comes down to the high of a hard rule at the dam, and the first after
-/// it on which one does again; autumn cools what summer spent, so the second may come.
-pub(super) fn exhausted(reached: &[Reached], run: &Run) -> (Exhausted, Option<NaiveDate>) {
+/// A stretch without reach.
+#[derive(Debug, Clone, PartialEq)]
+pub(super) struct OutOfReach {
+    /// Its first day of decision, on which no allowed mix comes down to the high of a hard rule at the dam.
+    pub(super) first: Exhausted,
+    /// Its last.
+    pub(super) last: Option<NaiveDate>,
+    /// The first after it on which one does again.
+    pub(super) until: Option<NaiveDate>,
+}
+
+/// The first stretch of days of decision on which no allowed mix comes down to the high of a hard rule at the dam; days
+/// on which no rule asks are passed over. Autumn cools what summer spent, so it may end.
+pub(super) fn exhausted(reached: &[Reached], run: &Run) -> OutOfReach {
+    let never = |first| OutOfReach { first, last: None, until: None };
     let Some(end) = run.days.last().map(|day| day.date) else {
-        return (Exhausted::Unknown("the season has no day".to_owned()), None);
+        return never(Exhausted::Unknown("the season has no day".to_owned()));
     };
     let told: Vec<(NaiveDate, bool)> =
         reached.iter().filter_map(|one| Some((one.date, out_of_reach(one)?))).collect();
     let first = told.iter().position(|(_, out)| *out);
     match (first, &run.ended) {
         (Some(first), _) => {
-            let again = told[first..].iter().find(|(_, out)| !out).map(|(date, _)| *date);
-            (Exhausted::On(told[first].0), again)
+            let from = &told[first..];
+            let last = from.iter().take_while(|(_, out)| *out).last().map(|(date, _)| *date);
+            let until = from.iter().find(|(_, out)| !out).map(|(date, _)| *date);
+            OutOfReach { first: Exhausted::On(told[first].0), last, until }
         }
-        (None, Some(ended)) => (Exhausted::Unknown(format!("the season stops on {}", ended.date)), None),
+        (None, Some(ended)) => never(Exhausted::Unknown(format!("the season stops on {}", ended.date))),
         (None, None) if told.is_empty() => {
             let words = "no hard rule at the dam bounds the temperature from above on a day of decision";
-            (Exhausted::Unknown(words.to_owned()), None)
+            never(Exhausted::Unknown(words.to_owned()))
         }
-        (None, None) => (Exhausted::NotBy(end), None),
+        (None, None) => never(Exhausted::NotBy(end)),
     }
 }
 

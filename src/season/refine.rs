@@ -73,6 +73,54 @@ fn nearest_c(order: &Order, mut low: f64, mut high: f64) -> f64 {
     inner(low, high, 0.5)
 }
 
+/// A side of what is within reach.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(super) enum Side {
+    /// The colder.
+    Colder,
+    /// The warmer.
+    Warmer,
+}
+
+/// Halvings that find how far a split can go (choice: a thirtieth of a step).
+const HALVINGS: usize = 5;
+
+/// Release of the mix of a ranking that lies farthest on a side, C. Where more of it would come nearer to what is asked,
+/// the split of its two largest parts is drawn out within a step as far as every limit but those of the change is kept:
+/// a level may pass more than the last whole step of it. `None` where nothing flows.
+pub(super) fn reach_c(choice: &Choice, asked: &Asked, side: Side, order: &Order) -> Option<f64> {
+    let plain_c = choice.flowing(asked)?.release.temperature_c;
+    let farther = |a: f64, b: f64| if side == Side::Colder { a < b } else { a > b };
+    let beyond_c = plain_c + if side == Side::Colder { -NEAR_C } else { NEAR_C };
+    let Some((between, [a, b])) = largest(choice, asked) else { return Some(plain_c) };
+    if order.off_c(beyond_c).0 >= order.off_c(plain_c).0 {
+        return Some(plain_c);
+    }
+    let step = WITHIN * choice.blocks[0].1 / STEPS as f64;
+    let moved = |by_m3s: f64| asked.with(between, [a + by_m3s, b - by_m3s]);
+    let release_c = |by_m3s: f64| choice.flowing(&moved(by_m3s)).map(|f| f.release.temperature_c);
+    let ways = [step.min(WITHIN * b), -step.min(WITHIN * a)];
+    let Some(way) = ways.into_iter().find(|way| release_c(*way).is_some_and(|c| farther(c, plain_c))) else {
+        return Some(plain_c);
+    };
+    let allowed_c = |share: f64| {
+        let tried = choice.tried(&moved(share * way), order)?;
+        tried.keeps(true).then_some(tried.temperature_c)
+    };
+    if let Some(all_c) = allowed_c(1.0) {
+        return Some(all_c);
+    }
+    let (mut low, mut high, mut found_c) = (0.0, 1.0, plain_c);
+    for _ in 0..HALVINGS {
+        let middle = 0.5 * (low + high);
+        match allowed_c(middle) {
+            Some(c) => (low, found_c) = (middle, c),
+            None => high = middle,
+        }
+    }
+    Some(if farther(found_c, plain_c) { found_c } else { plain_c })
+}
+
 /// The two largest parts that can be varied, with their flows, m3/s.
 fn largest(choice: &Choice, asked: &Asked) -> Option<([Part; 2], [f64; 2])> {
     let outlets = &choice.site.outlets;

@@ -54,7 +54,7 @@ impl Skies {
     /// Where neither tells every day, and the river has a given equilibrium and exchange, those hold on all days.
     ///
     /// # Errors
-    /// The first day without air, in words; days that end before they begin.
+    /// The first day without air, in words.
     pub fn of_case(
         site: &Site,
         conditions: &Conditions,
@@ -63,7 +63,7 @@ impl Skies {
         to: NaiveDate,
     ) -> Result<Self, String> {
         if to < from {
-            return Err(format!("its days end on {to}, before they begin on {from}"));
+            return Err(format!("it ends on {to}, before the season begins on {from}"));
         }
         let base = |date| base(site, conditions, date);
         let airs: Option<BTreeMap<NaiveDate, Air>> =
@@ -71,13 +71,14 @@ impl Skies {
         if let Some(mut days) = airs {
             let after = to.iter_days().skip(1).take(AFTER_DAYS);
             days.extend(after.map_while(|date| Some((date, shifted(&base(date)?, case)))));
-            let told = conditions.weather.days.range(from..=to).count();
-            let from = match (told, season(from, to).count()) {
-                (0, _) => "the figures of the months".to_owned(),
-                (told, all) if told == all => "the weather file".to_owned(),
-                (told, all) => {
-                    format!("the weather file on {told} of {all} days, else the figures of the months")
-                }
+            let told = season(from, to).filter(|date| conditions.weather.day(*date).is_some()).count();
+            let all = season(from, to).count();
+            let from = match told {
+                0 => "the figures of the months".to_owned(),
+                told if told == all => "the weather file".to_owned(),
+                told => format!(
+                    "the weather file on {told} of {all} days, on the others the figures of the months"
+                ),
             };
             return Ok(Self::under(site, conditions, case.clone(), days, from));
         }

@@ -4,7 +4,7 @@
 
 use chrono::NaiveDate;
 
-use crate::mix::{Asked, Setting};
+use crate::mix::{Asked, Gate, Setting};
 use crate::site::{Site, Strategy};
 
 use super::aims::aim_on;
@@ -28,12 +28,14 @@ pub(super) fn name(choosing: &Choosing) -> &'static str {
         Choosing::By(strategy) => strategy.name(),
         Choosing::Schedule(_) => "schedule",
         Choosing::Aims(_) | Choosing::Found(_) => Strategy::Thrift.name(),
+        Choosing::Held(..) => "held",
     }
 }
 
 /// Whether something is decided on a date because its time has come.
 pub(super) fn is_due(setup: &Setup, decides: NaiveDate, date: NaiveDate) -> bool {
-    let passed = (date - decides).num_days();
+    let from = if let Choosing::Held(_, until) = &setup.choosing { *until } else { decides };
+    let passed = (date - from).num_days();
     let is_turn = passed >= 0 && passed % i64::from(setup.decide_days.max(1)) == 0;
     is_turn || schedule(&setup.choosing).is_some_and(|s| s.changes.iter().any(|change| change.0 == date))
 }
@@ -46,6 +48,8 @@ pub(super) fn wants(setup: &Setup, decides: NaiveDate, site: &Site, date: NaiveD
         Choosing::Aims(aims) => Wants::Best(aim_on(aims, decides, setup.decide_days, date)),
         Choosing::By(Strategy::Hold) if is_forced => Wants::Best(0.0),
         Choosing::By(Strategy::Hold) => Wants::Stay,
+        Choosing::Held(asked, until) if date < *until && !is_forced => Wants::These(asked.clone()),
+        Choosing::Held(..) => Wants::Best(0.0),
         Choosing::Schedule(of) | Choosing::Found(of) => scheduled(of, site, date, why),
     }
 }
@@ -53,15 +57,23 @@ pub(super) fn wants(setup: &Setup, decides: NaiveDate, site: &Site, date: NaiveD
 fn schedule(choosing: &Choosing) -> Option<&Schedule> {
     match choosing {
         Choosing::Schedule(schedule) | Choosing::Found(schedule) => Some(schedule),
-        Choosing::By(_) | Choosing::Aims(_) => None,
+        Choosing::By(_) | Choosing::Aims(_) | Choosing::Held(..) => None,
     }
+}
+
+/// What the schedule of a setup has come to by a date; `None` before its first change, and without one.
+pub(super) fn set_by<'a>(setup: &'a Setup, date: NaiveDate) -> Option<&'a Vec<Gate>> {
+    come(schedule(&setup.choosing)?, date).map(|change| &change.1)
+}
+
+fn come(schedule: &Schedule, date: NaiveDate) -> Option<&(NaiveDate, Vec<Gate>)> {
+    schedule.changes.iter().take_while(|change| change.0 <= date).last()
 }
 
 /// What a schedule says on a date: at its changes, and on the first day of decisions what it has come to by then. What
 /// was forced holds until its next change.
 fn scheduled(schedule: &Schedule, site: &Site, date: NaiveDate, why: Why) -> Wants {
-    let come = schedule.changes.iter().take_while(|change| change.0 <= date).last();
-    let gates = match (come, why) {
+    let gates = match (come(schedule, date), why) {
         (Some(change), _) if change.0 == date => Some(&change.1),
         (Some(change), Why::Begin) => Some(&change.1),
         (_, Why::Forced(_)) => return Wants::Best(0.0),

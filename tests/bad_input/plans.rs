@@ -2,7 +2,7 @@
 
 use std::fs;
 
-use gatemix::files::folder::{Folder, ListedPlan};
+use gatemix::files::folder::{Folder, ListedPlan, check};
 use gatemix::files::plan::plan;
 use gatemix::files::site::site;
 use gatemix::files::text::{Format, Source, read_from};
@@ -303,8 +303,11 @@ fn scenario_plans_of_one_name_are_told_apart_by_their_files() {
     assert!(folder.schedules_said().is_empty(), "{:#?}", said(&folder.schedules_said()));
     fs::write(at("schedules/early.csv"), "date,A\n2025-08-10,10\n").unwrap();
     fs::write(at("schedules/wrong.csv"), "date,A\n2026-08-10,ten\n").unwrap();
-    let said: Vec<(&str, Weight)> = folder.schedules_said().iter().map(|p| (p.kind, p.weight)).collect();
-    assert_eq!(said, [("schedule-outside", Weight::Flag), ("set", Weight::Refused)]);
+    let of = |problems: &[Problem]| problems.iter().map(|p| (p.kind, p.weight)).collect::<Vec<_>>();
+    let said = of(&folder.schedules_said());
+    assert_eq!(said, [("schedule-days", Weight::Flag), ("set", Weight::Refused)]);
+    let checked = of(&check(dir.path().to_str().unwrap()).0);
+    assert!(said.iter().all(|one| checked.contains(one)), "told by check: {checked:?}");
 }
 
 #[test]

@@ -71,26 +71,3 @@ fn scenario_what_is_wrong_with_a_schedule_is_on_its_line_with_its_cure() {
     let (schedule, problems) = read("date,N1\n");
     assert!(schedule.is_none() && problems.iter().any(|p| p.kind == "plan-short"), "{:#?}", said(&problems));
 }
-
-#[test]
-fn scenario_a_schedule_that_lies_outside_a_season_says_what_comes_of_it() {
-    let schedule = read(SOUND).0.unwrap();
-    let outside = |from: &str, to: &str| schedule.outside(from.parse().unwrap(), to.parse().unwrap());
-    for (from, to) in
-        [("2026-07-01", "2026-07-14"), ("2026-08-01", "2026-11-30"), ("2026-07-20", "2026-07-25")]
-    {
-        assert!(outside(from, to).is_none(), "{from} {to}");
-    }
-    for (from, to, words) in [
-        (
-            "2026-08-02",
-            "2026-11-30",
-            "its last change, of 2026-08-01, comes before the first day, 2026-08-02",
-        ),
-        ("2026-05-01", "2026-07-13", "its first change, of 2026-07-14, comes after the last day, 2026-07-13"),
-    ] {
-        let flag = outside(from, to).unwrap();
-        assert_eq!((flag.kind, flag.place.file.as_deref()), ("schedule-outside", Some("s.csv")));
-        assert!(flag.words.starts_with(words) && !flag.cure.is_empty(), "{flag}");
-    }
-}

@@ -143,22 +143,35 @@ impl Folder {
                 return Err(unknown("gate schedule", named, SCHEDULES, &known));
             }
         };
-        let (schedule, problems) = schedule(&source, &self.site);
-        Ok(ReadSchedule { schedule: schedule.map(Arc::new), problems, source })
+        Ok(self.read_schedule(source))
     }
 
-    /// What is to be said of every gate schedule of the folder, that it fits none of its plans counted in.
+    /// The gate schedule of the folder whose file is called as that of a plan; `None` where there is none.
+    pub fn schedule_of(&self, plan: &ListedPlan) -> Option<Result<ReadSchedule, Problem>> {
+        let (_, source) = self.csv_sources(SCHEDULES, |file| base(file) == base(&plan.file)).pop()?;
+        Some(source.map(|source| self.read_schedule(source)))
+    }
+
+    fn read_schedule(&self, source: Source) -> ReadSchedule {
+        let (schedule, problems) = schedule(&source, &self.site);
+        ReadSchedule { schedule: schedule.map(Arc::new), problems, source }
+    }
+
+    /// What is to be said of every gate schedule of the folder, also where its changes lie on the days of none of its
+    /// plans.
     pub fn schedules_said(&self) -> Vec<Problem> {
         let spans: Vec<(NaiveDate, NaiveDate)> =
             self.plans().iter().filter_map(|listed| listed.plan.as_ref()?.span()).collect();
-        let said = |(_, source): (String, Result<Source, Problem>)| match source {
+        let planned = |date: NaiveDate| spans.iter().any(|(from, to)| (*from..=*to).contains(&date));
+        let said = |(file, source): (String, Result<Source, Problem>)| match source {
             Err(problem) => vec![problem],
             Ok(source) => {
-                let (schedule, mut problems) = schedule(&source, &self.site);
-                let outside = |(from, to): &(NaiveDate, NaiveDate)| schedule.as_ref()?.outside(*from, *to);
-                let of_plans: Vec<Option<Problem>> = spans.iter().map(outside).collect();
-                if of_plans.iter().all(Option::is_some) {
-                    problems.extend(of_plans.into_iter().flatten().next());
+                let ReadSchedule { schedule, mut problems, .. } = self.read_schedule(source);
+                let apart = |s: &Arc<Schedule>| !s.changes.iter().any(|(date, _)| planned(*date));
+                if !spans.is_empty() && schedule.as_ref().is_some_and(apart) {
+                    let words = "no change of the schedule lies on the days of a plan";
+                    let cure = "correct its dates, or add the plan of its days";
+                    problems.push(Problem::flag("schedule-days", words, cure).in_file(&file));
                 }
                 problems
             }

@@ -4,6 +4,7 @@ use std::sync::Arc;
 
 use chrono::NaiveDate;
 
+use crate::files::folder::ListedPlan;
 use crate::files::text::Source;
 use crate::problem::{Problem, Weight};
 use crate::season::{Choosing, Plan, Skies};
@@ -48,6 +49,8 @@ pub(super) struct Understood {
     pub(super) other_plans: Vec<Arc<Plan>>,
     /// Plans of the folder that are refused, each with its first problem.
     pub(super) refused: Vec<Problem>,
+    /// Plans of the folder whose days are over: they tell the past.
+    pub(super) over: Vec<Arc<Plan>>,
     /// The case spoken of.
     pub(super) case: Case,
     /// Every case.
@@ -70,13 +73,14 @@ pub(super) fn understood(context: &Context, asked: &SeasonAsked) -> Result<Under
     let decide_days = every(asked.every.as_deref())?.unwrap_or(site.season.decide_days);
     let mut sources = Vec::new();
     let choosing = choosing(context, asked, &mut sources)?;
-    let Plans { plan, others, refused, sources: read } = plans(context, asked.plan.as_deref())?;
+    let decides = context.on.date_naive();
+    let Plans { plan, others, refused, over: passed, sources: read } =
+        plans(context, asked.plan.as_deref(), decides)?;
     sources.extend(read);
     sources.extend(context.folder.years().and_then(|years| years.source.clone()));
-    let decides = context.on.date_naive();
     let cast = context.profile.taken.map(|taken| taken.with_timezone(&site.offset).date_naive());
     let begins = cast.map_or(decides, |cast| cast.min(decides));
-    if plan.span().is_none_or(|(_, last)| last <= decides) {
+    if is_over(&plan, decides) {
         return Err(Failure::Refused(vec![over(&plan, decides)], context.system));
     }
     let cases = cases(context, begins, &plan);
@@ -88,6 +92,7 @@ pub(super) fn understood(context: &Context, asked: &SeasonAsked) -> Result<Under
         plan,
         other_plans: others,
         refused,
+        over: passed,
         case,
         cases,
         choosing,
@@ -141,6 +146,11 @@ fn case(typed: Option<&str>, cases: &[Case]) -> Result<Case, Failure> {
     })
 }
 
+/// Whether a plan ends before anything is decided.
+fn is_over(plan: &Plan, decides: NaiveDate) -> bool {
+    plan.span().is_none_or(|(_, last)| last <= decides)
+}
+
 fn over(plan: &Plan, decides: NaiveDate) -> Problem {
     let last = plan.span().map_or_else(String::new, |(_, last)| format!(" on {last}"));
     let words = format!("the plan `{}` ends{last}, and the day decided for is {decides}", plan.name);
@@ -155,6 +165,11 @@ impl Case {
             Self::Shifted(case) => &case.name,
             Self::Year(skies) => &skies.case.name,
         }
+    }
+
+    /// Whether it is the same: a shifted case may bear the name of a year.
+    pub(super) fn is(&self, other: &Self) -> bool {
+        self.name() == other.name() && matches!(self, Self::Year(_)) == matches!(other, Self::Year(_))
     }
 
     /// Its air over the days of a plan.
@@ -189,15 +204,17 @@ struct Plans {
     plan: Arc<Plan>,
     others: Vec<Arc<Plan>>,
     refused: Vec<Problem>,
+    over: Vec<Arc<Plan>>,
     sources: Vec<Source>,
 }
 
-/// The plan of a name, the first by file name without; every other sound one of the folder beside it.
-fn plans(context: &Context, typed: Option<&str>) -> Result<Plans, Failure> {
+/// The plan of a name, without one the first by file name that is not over; every other sound one of the folder beside
+/// it.
+fn plans(context: &Context, typed: Option<&str>, decides: NaiveDate) -> Result<Plans, Failure> {
     let folder = &context.folder;
     let listed = match typed {
         Some(name) => folder.plan(name).map_err(|problem| usage("--plan", &problem))?,
-        None => folder.plans().first().cloned().ok_or_else(|| {
+        None => ahead(folder.plans(), decides).cloned().ok_or_else(|| {
             let cure = "put one into the folder `plans` of the site: date, pool or release, inflow and its temperature";
             let problem = Problem::refused("no-plan", "the site has no plan of a season", cure);
             Failure::Refused(vec![problem], context.system)
@@ -210,16 +227,25 @@ fn plans(context: &Context, typed: Option<&str>) -> Result<Plans, Failure> {
     let refused = beside()
         .filter(|other| other.plan.is_none())
         .filter_map(|other| other.problems.iter().find(|p| p.weight == Weight::Refused).cloned());
+    let sound = beside().filter_map(|other| other.plan.clone());
+    let (over, others) = sound.partition(|other| is_over(other, decides));
     Ok(Plans {
         plan,
-        others: beside().filter_map(|other| other.plan.clone()).collect(),
+        others,
+        over,
         refused: refused.collect(),
         sources: listed.source.into_iter().chain(beside().filter_map(|other| other.source.clone())).collect(),
     })
 }
 
+/// The first plan that is not over, or is refused; where all are over the first.
+fn ahead(plans: &[ListedPlan], decides: NaiveDate) -> Option<&ListedPlan> {
+    let is_ahead = |listed: &&ListedPlan| listed.plan.as_ref().is_none_or(|plan| !is_over(plan, decides));
+    plans.iter().find(is_ahead).or_else(|| plans.first())
+}
+
 /// What cannot be found by a name that was typed, with those there are.
-fn usage(option: &str, problem: &Problem) -> Failure {
+pub(super) fn usage(option: &str, problem: &Problem) -> Failure {
     Failure::Usage(format!("{option}: {}", problem.advice(System::default())))
 }
 
