@@ -99,7 +99,18 @@ pub(super) fn answer(cli: &Cli, clock: DateTime<Utc>, progress: Progress) -> Res
             let missed = answer.spoken().is_none_or(|way| way.targets.iter().any(TargetStanding::missed));
             (shown, strictly(*strict, missed))
         }
-        Some(Command::Season { common, asked, csv, strict }) => {
+        Some(Command::Season { common, asked, learn: Some(casts), .. }) => {
+            let context = tasks::open(&common.asked(), clock)?;
+            let answer = tasks::season::learn(&context, &asked.learning(casts), &|done| progress.tell(done))?;
+            drop(progress);
+            let shown = if common.json {
+                json::learned(&context, &answer)
+            } else {
+                common.color.of(&text::learned(&context, &answer))
+            };
+            (shown, End::Answered)
+        }
+        Some(Command::Season { common, asked, csv, strict, .. }) => {
             let context = tasks::open(&common.asked(), clock)?;
             let answer = tasks::season::season(&context, &asked.asked(), &|done| progress.tell(done))?;
             drop(progress);

@@ -5,7 +5,7 @@ use std::path::PathBuf;
 use clap::{Args, Parser, Subcommand, ValueEnum};
 
 use crate::tasks::rank::RankAsked;
-use crate::tasks::season::SeasonAsked;
+use crate::tasks::season::{LearnAsked, SeasonAsked};
 use crate::tasks::{Asked, Word};
 use crate::units::System;
 
@@ -79,6 +79,16 @@ pub(super) enum Command {
         common: Common,
         #[command(flatten)]
         asked: Ahead,
+        /// Learn what nobody measures of the pool from the casts of two dates, test it on a third: their dates or files,
+        /// comma between; without them the last three that a plan and a schedule tell the days of.
+        #[arg(
+            long,
+            value_name = "FROM,TO,TEST",
+            num_args = 0..=1,
+            default_missing_value = "",
+            conflicts_with_all = ["case", "strategy", "every", "csv", "strict"]
+        )]
+        learn: Option<String>,
         /// As a table for a spreadsheet, a row a day, in the units shown.
         #[arg(long, conflicts_with = "json")]
         csv: bool,
@@ -264,6 +274,16 @@ impl Ahead {
             strategy: self.strategy.clone(),
             schedule: self.schedule.clone(),
             every: self.every.clone(),
+            now: self.now.clone(),
+        }
+    }
+
+    /// The same for days that have passed; no casts named where none were typed.
+    pub(super) fn learning(&self, casts: &str) -> LearnAsked {
+        LearnAsked {
+            casts: Some(casts.to_owned()).filter(|casts| !casts.is_empty()),
+            plan: self.plan.clone(),
+            schedule: self.schedule.clone(),
             now: self.now.clone(),
         }
     }

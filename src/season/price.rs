@@ -4,13 +4,12 @@
 
 use std::sync::Mutex;
 
-use chrono::{Days, NaiveDate, NaiveTime};
+use chrono::{Days, NaiveDate};
 use rayon::prelude::*;
 
-use crate::mix::{Perturbed, Setting};
+use crate::mix::{Asked, Perturbed, Setting};
 use crate::profile::Profile;
 use crate::rank::Progress;
-use crate::site::Strategy;
 
 use super::outcome::{Exhausted, season_site};
 use super::plan::Plan;
@@ -70,31 +69,35 @@ pub struct Price {
     /// Days by which cold water runs out later; `None` where that is not known. A season in which it does not run out
     /// counts as running out on the day after its last.
     pub exhausted: Option<Change>,
-    /// Days more outside the hard targets.
-    pub outside: Change,
+    /// Whether, from the cast as it is, cold water lasts to the end of the season: with the mix that prices are told
+    /// against, and with this one.
+    pub lasts: [bool; 2],
+    /// Days more outside the hard targets; `None` where a season stops before its plan, so that they cannot be counted.
+    pub outside: Option<Change>,
 }
 
 /// What a season comes to, as far as prices go.
 #[derive(Debug, Clone, Copy)]
 struct Cost {
     exhausted: Option<NaiveDate>,
-    outside: u32,
+    lasts: bool,
+    outside: Option<u32>,
 }
 
-/// The price of each mix if it is held until the next decision and the best mix of the day is set from then on: against
-/// the first of them. `None` where the caller stops it, or the cast shows no water.
+/// The price of each mix if it is set on the day decided for and held until the next decision as long as no limit
+/// stands against it, the best mix of the day from then on: against the first of them. From the cast to the day decided
+/// for what is set now stays; where that is not known, the first of them. `None` where the caller stops it, or the cast
+/// shows no water.
 pub fn prices(of: &Pricing, mixes: &[&Setting], progress: Progress) -> Option<Vec<Price>> {
     let columns = of.perturbed.columns().take(PRICE_MEMBERS);
     let perturbed = columns.map(|column| Profile { column: column.clone(), ..of.start.clone() });
     let casts: Vec<Profile> = std::iter::once(of.start.clone()).chain(perturbed).collect();
-    let casts: Vec<(Profile, NaiveDate)> =
-        casts.iter().map(|cast| today(of, cast, progress)).collect::<Option<_>>()?;
-    let jobs: Vec<(usize, usize)> =
-        (0..casts.len()).flat_map(|cast| (0..mixes.len()).map(move |mix| (cast, mix))).collect();
+    let jobs: Vec<(&Profile, &Setting)> =
+        casts.iter().flat_map(|cast| mixes.iter().map(move |mix| (cast, *mix))).collect();
+    let before = of.now.or(mixes.first().copied());
     let done = Mutex::new(0_usize);
-    let cost = |&(cast, mix): &(usize, usize)| {
-        let (start, begins) = casts.get(cast)?;
-        let cost = held(of, start, *begins, mixes.get(mix)?, progress)?;
+    let cost = |&(cast, mix): &(&Profile, &Setting)| {
+        let cost = held(of, cast, before, mix, progress)?;
         let count = done.lock().map_or(0, |mut done| {
             *done += 1;
             *done
@@ -106,68 +109,52 @@ pub fn prices(of: &Pricing, mixes: &[&Setting], progress: Progress) -> Option<Ve
     Some((0..mixes.len()).filter_map(|mix| price(&by_cast, mix)).collect())
 }
 
-/// The price of a mix, from the costs of every mix on the cast and on each member.
+/// The price of a mix, from the costs of every mix on the cast and on each member. What one member cannot tell has no
+/// range.
 fn price(by_cast: &[&[Cost]], mix: usize) -> Option<Price> {
     let pairs: Vec<(Cost, Cost)> =
         by_cast.iter().filter_map(|costs| Some((*costs.first()?, *costs.get(mix)?))).collect();
     let later = |(base, this): &(Cost, Cost)| Some((this.exhausted? - base.exhausted?).num_days());
-    let more = |(base, this): &(Cost, Cost)| i64::from(this.outside) - i64::from(base.outside);
-    let (cast, members) = pairs.split_first()?;
-    let outside = Change::of(more(cast), members.iter().map(more));
-    let exhausted = later(cast).map(|days| Change::of(days, members.iter().filter_map(later)));
-    Some(Price { exhausted, outside })
+    let more = |(base, this): &(Cost, Cost)| Some(i64::from(this.outside?) - i64::from(base.outside?));
+    let change = |of: &dyn Fn(&(Cost, Cost)) -> Option<i64>| {
+        let days: Vec<i64> = pairs.iter().map(of).collect::<Option<_>>()?;
+        let (cast, members) = days.split_first()?;
+        Some(Change::of(*cast, members.iter().copied()))
+    };
+    let (base, this) = pairs.first()?;
+    Some(Price { exhausted: change(&later), lasts: [base.lasts, this.lasts], outside: change(&more) })
 }
 
-/// The pool on the day decided for, after what is set now has been held since the cast.
-fn today(of: &Pricing, cast: &Profile, progress: Progress) -> Option<(Profile, NaiveDate)> {
-    if of.begins >= of.on || of.now.is_none() {
-        return Some((cast.clone(), of.begins));
-    }
-    let last = of.on.pred_opt()?;
-    let days = of.plan.days.iter().filter(|day| day.date <= last).copied().collect::<Vec<_>>();
-    if days.last().is_none_or(|day| day.date < last) {
-        return Some((cast.clone(), of.begins));
-    }
-    let until = Plan { days, ..of.plan.clone() };
-    // whoever is told how much is done is told of the seasons that follow
-    let before =
-        run(&Setup { plan: &until, ..setup(of, cast, of.begins, of.now, of.on) }, &|_| progress(0.0))?;
-    let site = &of.skies.site;
-    let at = of.on.and_time(NaiveTime::MIN).and_local_timezone(site.offset).single()?;
-    Some((before.days.last()?.layers.profile(site, at)?, of.on))
-}
-
-fn setup<'a>(
-    of: &Pricing<'a>,
-    start: &'a Profile,
-    begins: NaiveDate,
-    now: Option<&'a Setting>,
-    decides: NaiveDate,
-) -> Setup<'a> {
-    Setup {
+/// What comes of holding a mix from the day decided for to the next decision.
+fn held(
+    of: &Pricing,
+    start: &Profile,
+    before: Option<&Setting>,
+    mix: &Setting,
+    progress: Progress,
+) -> Option<Cost> {
+    let next = of.on.checked_add_days(Days::new(of.decide_days.into()))?;
+    let setup = Setup {
         start,
-        begins,
-        decides,
-        now,
+        begins: of.begins,
+        decides: of.on,
+        now: before,
         plan: of.plan,
         skies: of.skies,
-        choosing: Choosing::By(Strategy::Best),
+        choosing: Choosing::Held(Asked::of(&of.skies.site, mix), next),
         decide_days: of.decide_days,
-    }
-}
-
-/// What comes of holding a mix until the next decision.
-fn held(of: &Pricing, start: &Profile, begins: NaiveDate, mix: &Setting, progress: Progress) -> Option<Cost> {
-    let next = of.on.checked_add_days(Days::new(of.decide_days.into()))?;
-    let setup = setup(of, start, begins, Some(mix), next);
+    };
+    // whoever is told how much is done is told of whole seasons
     let season = run(&setup, &|_| progress(0.0))?;
     let site = season_site(&setup);
     let reached = reached::reached(&setup, &site, &season);
     let end = season.days.last().and_then(|day| day.date.succ_opt());
-    let exhausted = match reached::exhausted(&reached, &season).first {
-        Exhausted::On(date) => Some(date),
-        Exhausted::NotBy(_) => end,
-        Exhausted::Unknown(_) => None,
+    let (exhausted, lasts) = match reached::exhausted(&reached, &season).first {
+        Exhausted::On(date) => (Some(date), false),
+        Exhausted::NotBy(_) => (end, true),
+        Exhausted::Unknown(_) => (None, false),
     };
-    Some(Cost { exhausted, outside: Score::of(&setup, &season).days_outside })
+    let score = Score::of(&setup, &season);
+    let outside = (season.ended.is_none() && score.lost == 0).then_some(score.days_outside);
+    Some(Cost { exhausted, lasts, outside })
 }

@@ -7,7 +7,7 @@ use std::sync::Arc;
 use chrono::NaiveDate;
 
 use crate::mix::limits::Check;
-use crate::mix::{Blend, Drawn, Gate, Setting};
+use crate::mix::{Asked, Blend, Drawn, Gate, Setting};
 use crate::profile::Profile;
 use crate::rank::Progress;
 use crate::river::Figures;
@@ -32,6 +32,9 @@ pub enum Choosing {
     Aims(Arc<Vec<f64>>),
     /// The gates that thrift found on another case where it could try every one: followed here.
     Found(Arc<Schedule>),
+    /// This is set on the first day of decisions and held until a date as long as no limit stands against it; from then
+    /// on the best mix of the day.
+    Held(Asked, NaiveDate),
 }
 
 /// What a run is made from.
@@ -124,7 +127,7 @@ pub fn run(setup: &Setup, progress: Progress) -> Option<Run> {
 /// Goes through days that have passed: gates as the schedule of the setup tells, else as they stand now, whatever limit
 /// stood against it. Stopped as [`run`] is.
 pub fn passed(setup: &Setup, progress: Progress) -> Option<Run> {
-    Going::new(setup)?.through_the_past(progress)
+    Going::new(setup)?.through_what_was(progress)
 }
 
 impl Run {

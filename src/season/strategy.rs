@@ -28,12 +28,14 @@ pub(super) fn name(choosing: &Choosing) -> &'static str {
         Choosing::By(strategy) => strategy.name(),
         Choosing::Schedule(_) => "schedule",
         Choosing::Aims(_) | Choosing::Found(_) => Strategy::Thrift.name(),
+        Choosing::Held(..) => "held",
     }
 }
 
 /// Whether something is decided on a date because its time has come.
 pub(super) fn is_due(setup: &Setup, decides: NaiveDate, date: NaiveDate) -> bool {
-    let passed = (date - decides).num_days();
+    let from = if let Choosing::Held(_, until) = &setup.choosing { *until } else { decides };
+    let passed = (date - from).num_days();
     let is_turn = passed >= 0 && passed % i64::from(setup.decide_days.max(1)) == 0;
     is_turn || schedule(&setup.choosing).is_some_and(|s| s.changes.iter().any(|change| change.0 == date))
 }
@@ -42,7 +44,8 @@ pub(super) fn is_due(setup: &Setup, decides: NaiveDate, date: NaiveDate) -> bool
 pub(super) fn wants(setup: &Setup, decides: NaiveDate, site: &Site, date: NaiveDate, why: Why) -> Wants {
     let is_forced = matches!(why, Why::Forced(_));
     match &setup.choosing {
-        Choosing::By(Strategy::Best | Strategy::Thrift) => Wants::Best(0.0),
+        Choosing::Held(asked, until) if date < *until && !is_forced => Wants::These(asked.clone()),
+        Choosing::By(Strategy::Best | Strategy::Thrift) | Choosing::Held(..) => Wants::Best(0.0),
         Choosing::Aims(aims) => Wants::Best(aim_on(aims, decides, setup.decide_days, date)),
         Choosing::By(Strategy::Hold) if is_forced => Wants::Best(0.0),
         Choosing::By(Strategy::Hold) => Wants::Stay,
@@ -53,7 +56,7 @@ pub(super) fn wants(setup: &Setup, decides: NaiveDate, site: &Site, date: NaiveD
 fn schedule(choosing: &Choosing) -> Option<&Schedule> {
     match choosing {
         Choosing::Schedule(schedule) | Choosing::Found(schedule) => Some(schedule),
-        Choosing::By(_) | Choosing::Aims(_) => None,
+        Choosing::By(_) | Choosing::Aims(_) | Choosing::Held(..) => None,
     }
 }
 

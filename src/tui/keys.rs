@@ -107,6 +107,8 @@ pub enum Action {
     Calendar,
     /// Oxygen in place of temperature.
     Oxygen,
+    /// What the mixes cost by the end of the season.
+    Prices,
 }
 
 /// Where a key works.
@@ -276,7 +278,8 @@ pub const TABLE: &[Binding] = &[
     ),
     on(P::Rank, Char('c'), "c", "order", "order the criteria", A::Order),
     on(P::Rank, Char('t'), "t", "release", "type the total release", A::Release),
-    on(P::Rank, Char('r'), "r", "", "rank again after it was stopped", A::Again),
+    on(P::Rank, Char('p'), "p", "price", "what each mix costs by the end of the season; and back", A::Prices),
+    on(P::Rank, Char('r'), "r", "", "rank, or compute the prices, again after it was stopped", A::Again),
     on(P::Rank, KeyCode::PageUp, "PgUp PgDn", "", "scroll what is said of the mix", A::PageUp),
     on(P::Rank, KeyCode::PageDown, "", "", "", A::PageDown),
     on(P::Rank, KeyCode::Home, "Home End", "", "the first, the last", A::First),
@@ -380,33 +383,4 @@ pub(super) fn hints(places: &[Place]) -> Vec<(&'static str, &'static str)> {
 }
 
 #[cfg(test)]
-mod tests {
-    use super::*;
-
-    #[test]
-    fn law_no_key_stands_twice_in_a_place() {
-        for (i, a) in TABLE.iter().enumerate() {
-            for b in &TABLE[i + 1..] {
-                let same = a.place == b.place && a.key == b.key && a.ctrl == b.ctrl;
-                assert!(!same, "{:?} {:?} stands twice", a.place, a.key);
-            }
-        }
-    }
-
-    #[test]
-    fn law_every_action_of_a_place_is_told() {
-        // a key without words shares the line of another that has them, just before it
-        for pair in TABLE.windows(2) {
-            assert!(!pair[1].words.is_empty() || pair[0].place == pair[1].place, "{:?}", pair[1].key);
-        }
-        assert!(Place::HEADINGS.iter().all(|(p, _)| TABLE.iter().any(|b| b.place == *p)));
-    }
-
-    #[test]
-    fn scenario_a_key_let_go_asks_for_nothing() {
-        let mut event = KeyEvent::new(Char('q'), KeyModifiers::NONE);
-        assert_eq!(action(&event, &[Place::Pool, Place::Everywhere]), Some(Action::Quit));
-        event.kind = KeyEventKind::Release;
-        assert_eq!(action(&event, &[Place::Pool, Place::Everywhere]), None);
-    }
-}
+mod tests;

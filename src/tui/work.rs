@@ -14,14 +14,14 @@ use crate::files::folder::{Stamps, stamps};
 use crate::problem::Problem;
 use crate::tasks::rank::{RankAnswer, RankAsked, Shown, rank};
 use crate::tasks::river::downstream;
-use crate::tasks::season::season;
+use crate::tasks::season::{SeasonAsked, prices, season};
 use crate::tasks::{
     Asked, Cast, Changed, Context, Failure, Given, MixAnswer, PoolAnswer, Solved, casts, mix, mix_given,
     open, pool, preferred_c, solve,
 };
 use crate::units::System;
 
-use super::model::{Ahead, Downstream, SeasonQuestion, asked};
+use super::model::{Ahead, Downstream, Priced, SeasonQuestion, asked};
 
 /// Who computes: what answers a key, or what takes longer.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -34,7 +34,7 @@ pub enum Lane {
     Aside,
     /// The river.
     Down,
-    /// The season.
+    /// The season, and the price of mixes by its end.
     Ahead,
 }
 
@@ -83,6 +83,15 @@ pub enum Work {
     },
     /// The season ahead, under what is changed.
     Season(SeasonQuestion),
+    /// What the mixes of a ranking cost by the end of the season.
+    Prices {
+        /// The files and changes of the ranking.
+        context: Arc<Context>,
+        /// The ranking.
+        ranking: Box<RankAnswer>,
+        /// Plan and case.
+        asked: SeasonAsked,
+    },
 }
 
 /// What settings are computed on.
@@ -127,6 +136,8 @@ pub enum Done {
     Down(Result<Box<Downstream>, Failure>),
     /// The season.
     Ahead(Result<Box<Ahead>, Failure>),
+    /// The price of mixes.
+    Priced(Result<Box<Priced>, Failure>),
 }
 
 impl Work {
@@ -137,7 +148,7 @@ impl Work {
             Self::Rank { .. } => Lane::Long,
             Self::Casts(..) => Lane::Aside,
             Self::River { .. } => Lane::Down,
-            Self::Season(..) => Lane::Ahead,
+            Self::Season(..) | Self::Prices { .. } => Lane::Ahead,
         }
     }
 
@@ -175,20 +186,23 @@ impl Work {
                     Ok(Box::new(Ahead { question, context: Arc::new(context), answer }))
                 }))
             }
+            Self::Prices { context, ranking, asked } => Done::Priced(
+                prices(&context, &ranking, &asked, progress)
+                    .map(|prices| Box::new(Priced { context, asked, prices })),
+            ),
         }
     }
 
-    /// The answer of a question whose computing failed: a fault of the program.
-    fn failed(lane: Lane, opening: bool, why: &str) -> Done {
-        let problem = Problem::refused("fault", why, "please report it with your files");
-        let failure = Failure::Refused(vec![problem], System::default());
-        match lane {
-            Lane::Long => Done::Ranked(Err(failure)),
-            Lane::Aside => Done::Casts(Err(failure)),
-            Lane::Down => Done::Down(Err(failure)),
-            Lane::Ahead => Done::Ahead(Err(failure)),
-            Lane::Quick if opening => Done::Opened(Err(failure), None),
-            Lane::Quick => Done::Mixed(Err(failure)),
+    /// What a failure is to this question.
+    fn unanswered(&self) -> fn(Failure) -> Done {
+        match self {
+            Self::Open(..) => |failure| Done::Opened(Err(failure), None),
+            Self::Mix { .. } => |failure| Done::Mixed(Err(failure)),
+            Self::Rank { .. } => |failure| Done::Ranked(Err(failure)),
+            Self::Casts(..) => |failure| Done::Casts(Err(failure)),
+            Self::River { .. } => |failure| Done::Down(Err(failure)),
+            Self::Season(..) => |failure| Done::Ahead(Err(failure)),
+            Self::Prices { .. } => |failure| Done::Priced(Err(failure)),
         }
     }
 }
@@ -257,7 +271,7 @@ fn serve(questions: &Receiver<(u64, Work)>, newest: &AtomicU64, send: &(impl Fn(
         if stale() {
             continue;
         }
-        let (lane, opening) = (work.lane(), matches!(work, Work::Open(..)));
+        let (lane, unanswered) = (work.lane(), work.unanswered());
         let told = Mutex::new(0.0_f64);
         let progress = |done: f64| {
             let mut told = told.lock().unwrap_or_else(PoisonError::into_inner);
@@ -269,8 +283,11 @@ fn serve(questions: &Receiver<(u64, Work)>, newest: &AtomicU64, send: &(impl Fn(
             if stale() { ControlFlow::Break(()) } else { ControlFlow::Continue(()) }
         };
         // a fault in one question must not take the screens along
-        let done = catch_unwind(AssertUnwindSafe(|| work.perform(&progress)))
-            .unwrap_or_else(|_| Work::failed(lane, opening, "the computing failed: a fault of the program"));
+        let done = catch_unwind(AssertUnwindSafe(|| work.perform(&progress))).unwrap_or_else(|_| {
+            let words = "the computing failed: a fault of the program";
+            let problem = Problem::refused("fault", words, "please report it with your files");
+            unanswered(Failure::Refused(vec![problem], System::default()))
+        });
         if !stale() {
             send(Sent::Done(lane, generation, done));
         }

@@ -1,5 +1,5 @@
 //! Tessel Dam on the Varr Water, both invented: two years of weather, inflow and operation, and the casts taken from
-//! the tower meanwhile.
+//! the tower meanwhile; of the last spring also what came in and what was set.
 //!
 //! The pool is the column of the other sites with a clear upland pool's nature; the weather is harmonics with noise from
 //! a fixed seed. Every number is a choice for a supply dam at 46 degrees north and 350 m.
@@ -12,6 +12,7 @@ use serde_yaml::Value;
 
 use super::basin::Basin;
 use super::column::{Column, Forcing, Nature, Water};
+use super::past::{Past, PastDay};
 use super::season::{bell, fading, through, yearly};
 use super::sonde::{Cast, sound, times};
 use super::water::oxygen_saturation_mg_l;
@@ -33,6 +34,9 @@ const TAKEN: [&str; 10] = [
     "2026-06-09T09:45",
     "2026-06-30T09:20",
 ];
+/// The days since the seventh cast, of this year, are told by a plan and a schedule of what has been.
+const PAST_FROM: usize = 6;
+const OF: &str = "Tessel Dam on the Varr Water";
 /// Water over the centre of a gate with which it draws no air, m.
 const LEAST_OVER_GATE_M: f64 = 3.7;
 
@@ -62,10 +66,12 @@ impl Site {
 
 /// Every file beside `site.yaml` and the plans, by its path in the folder.
 pub(crate) fn files(text: &str) -> BTreeMap<String, String> {
-    casts(&Site::read(text)).iter().map(|cast| cast.file("Tessel Dam on the Varr Water")).collect()
+    let (casts, spring) = years(&Site::read(text));
+    let casts = casts.iter().map(|cast| cast.file(OF));
+    casts.chain([spring.plan(OF), spring.schedule(OF)]).collect()
 }
 
-fn casts(site: &Site) -> Vec<Cast> {
+fn years(site: &Site) -> (Vec<Cast>, Past) {
     let times: Vec<NaiveDateTime> = times(&TAKEN);
     let last = times[times.len() - 1].date();
     let (y, m, d) = FIRST_DAY;
@@ -75,12 +81,15 @@ fn casts(site: &Site) -> Vec<Cast> {
     let mut noise = [0.0; 3];
     let autumn = Water { temperature_c: 9.0, oxygen_mg_l: 10.4, conductance_us_cm: 210.0 };
     let mut column = Column::mixed(&site.basin, 0.0, rule_curve_m(day), autumn).with(NATURE);
-    let mut casts = Vec::new();
+    let (mut casts, mut spring) = (Vec::new(), Past::default());
     while day <= last {
         for (value, kept) in noise.iter_mut().zip([0.8, 0.4, 0.85]) {
             *value = fading(&mut weather, kept, *value);
         }
         let forcing = operate(site, &column, day, noise);
+        if day >= times[PAST_FROM].date() {
+            spring.days.push(passed(site, day, &forcing));
+        }
         for _ in 0..STEPS_A_DAY {
             column.step(&forcing, 86400.0 / f64::from(STEPS_A_DAY));
         }
@@ -89,7 +98,21 @@ fn casts(site: &Site) -> Vec<Cast> {
         }
         day = day.succ_opt().unwrap();
     }
-    casts
+    (casts, spring)
+}
+
+/// One day as the dam's book has it: the two gates by their place among the tower's, the uppermost first.
+fn passed(site: &Site, day: NaiveDate, forcing: &Forcing) -> PastDay {
+    let place = |(gate_m, flow_m3s): (f64, f64)| {
+        let gate = site.gates_m.iter().position(|&z_m| (z_m - gate_m).abs() < 1e-9);
+        (gate.unwrap(), flow_m3s)
+    };
+    PastDay {
+        day,
+        inflow_m3s: forcing.inflow_m3s,
+        inflow: forcing.inflow,
+        gates: forcing.releases.map(place),
+    }
 }
 
 /// One day's weather, inflow and gates; the noise is of air, wind and rain.

@@ -8,10 +8,11 @@ use crate::{read, root};
 
 /// What the README shows, in its order: a file of screens with the heading of one of them, or a command with the line
 /// before which its answer is cut.
-const SHOWN: [(&str, &str); 3] = [
+const SHOWN: [(&str, &str); 4] = [
     ("docs/screens/mix.txt", "mix at 80x24"),
     ("gatemix rank ashlar", ""),
     ("gatemix river ashlar", "Day by day"),
+    ("gatemix season tessel", "Cold water"),
 ];
 
 /// A screen, or what a command prints.

@@ -116,6 +116,21 @@ fn law_a_day_without_air_is_named() {
 }
 
 #[test]
+fn law_a_gap_in_the_weather_is_told_and_a_season_of_no_day_has_no_year() {
+    let (from, to) = (day("2026-08-02"), day("2026-08-09"));
+    let told = |gone| {
+        let conditions =
+            Conditions { weather: record("2026-08-01", "2026-08-09", gone), ..Conditions::default() };
+        Skies::of_case(&dam(MONTHS), &conditions, &case(0.0, 1.0), from, to).unwrap().from
+    };
+    assert_eq!(told(""), "the weather file");
+    let gap = "the weather file on 7 of 8 days, on the others the figures of the months";
+    assert_eq!(told("2026-08-04"), gap);
+    let weather = record("2026-08-01", "2026-08-09", "");
+    assert!(Skies::of_years(&dam(MONTHS), &Conditions::default(), &weather, to, from).is_empty());
+}
+
+#[test]
 fn law_years_that_hold_all_the_days_of_the_season_make_a_case_each() {
     let (from, to) = (day("2028-02-20"), day("2028-03-10"));
     let of_years = |weather: &Weather| Skies::of_years(&dam(""), &Conditions::default(), weather, from, to);

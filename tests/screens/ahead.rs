@@ -8,12 +8,13 @@ use chrono::Days;
 use gatemix::mix::limits::Move;
 use gatemix::mix::{Asked, Gate, Setting, draw_levels, groups, levels, release};
 use gatemix::season::{
-    Balance, Choosing, Decision, Layers, Plan, PlanDay, Run, SeasonDay, Setup, Skies, Why, outcome,
+    Balance, Change, Choosing, Decision, Layers, Plan, PlanDay, Price, Run, SeasonDay, Setup, Skies, Why,
+    outcome,
 };
 use gatemix::site::Strategy;
 use gatemix::tasks::Context;
-use gatemix::tasks::season::{SeasonAnswer, SeasonRun};
-use gatemix::tui::model::{Ahead, SeasonQuestion};
+use gatemix::tasks::season::{Prices, SeasonAnswer, SeasonRun};
+use gatemix::tui::model::{Ahead, Priced, SeasonQuestion};
 use gatemix::tui::{Done, Event, Lane, Sent, Work};
 use gatemix::withdrawal::CrestForm;
 
@@ -25,12 +26,48 @@ const EVERY: u64 = 7;
 /// Release, m3/s.
 const RELEASE_M3S: f64 = 30.0;
 
-/// Answers the question about the season that waits.
+/// Answers the question about the season, or about the price of mixes, that waits.
 pub(crate) fn answer(driver: &mut Driver) {
+    answer_with(driver, |_| {});
+}
+
+/// The same, a season changed before it is told.
+pub(crate) fn answer_with(driver: &mut Driver, change: impl FnOnce(&mut Ahead)) {
     let (generation, work) = driver.question(Lane::Ahead).expect("a season is asked for");
-    let Work::Season(question) = work else { panic!("the lane is that of the season") };
-    let ahead = invented(question);
-    driver.send(Event::Sent(Sent::Done(Lane::Ahead, generation, Done::Ahead(Ok(Box::new(ahead))))));
+    let done = match work {
+        Work::Season(question) => {
+            let mut ahead = invented(question);
+            change(&mut ahead);
+            Done::Ahead(Ok(Box::new(ahead)))
+        }
+        Work::Prices { context, ranking, asked } => {
+            let prices = priced(&context, ranking.mixes.len());
+            Done::Priced(Ok(Box::new(Priced { context, asked, prices })))
+        }
+        _ => panic!("the lane is that of the season"),
+    };
+    driver.send(Event::Sent(Sent::Done(Lane::Ahead, generation, done)));
+}
+
+/// Prices of so many mixes: the first no sooner or later, each one after it a day later than the one before.
+fn priced(context: &Context, mixes: usize) -> Prices {
+    let from = context.on.date_naive();
+    let price = |day| Price {
+        exhausted: Some(Change { days: day, range: (day, 2 * day) }),
+        lasts: [false, false],
+        outside: Some(Change { days: -day, range: (-day, day) }),
+    };
+    Prices {
+        plan: "early".to_owned(),
+        case: "middling".to_owned(),
+        until: from.checked_add_days(Days::new(EVERY)).unwrap(),
+        from,
+        against_now: true,
+        members: 5,
+        mixes: (0..).map(price).take(mixes).collect(),
+        notes: Vec::new(),
+        fingerprint: context.fingerprint.clone(),
+    }
 }
 
 /// Seasons of two plans and three cases.
@@ -39,7 +76,8 @@ fn invented(question: SeasonQuestion) -> Ahead {
     let context = context.unwrap_or_else(|_| question.base.clone());
     let asked = &question.asked;
     let strategy = asked.strategy.clone().unwrap_or_else(|| "best".to_owned());
-    let plan = asked.plan.clone().unwrap_or_else(|| "early".to_owned());
+    let file = asked.plan.as_deref().unwrap_or("plans/early.csv");
+    let plan = file.trim_start_matches("plans/").trim_end_matches(".csv").to_owned();
     let case = asked.case.clone().unwrap_or_else(|| "middling".to_owned());
     let other = if plan == "early" { "late" } else { "early" };
     let cases = context.site().season.cases.iter().map(|c| c.name.clone()).filter(|name| *name != case);

@@ -11,6 +11,7 @@ mod held;
 mod kept;
 mod keys;
 mod numbers;
+mod prices;
 #[cfg(unix)]
 mod pty;
 mod screens;

@@ -1,13 +1,16 @@
 //! The season screen: asked when it is looked at, stopped, asked again; plans, cases and strategies; a date read.
 
 use crossterm::event::{KeyModifiers, MouseButton, MouseEvent, MouseEventKind};
+use gatemix::mix::limits::{Check, Of, Rule};
+use gatemix::problem::Problem;
+use gatemix::tasks::Failure;
 use gatemix::tui::model::{Cell, SeasonPage, Session};
-use gatemix::tui::{Event, Lane, Symbols};
+use gatemix::tui::{Done, Event, Lane, Sent, Symbols};
 
-use crate::ahead::answer;
+use crate::ahead::{answer, answer_with};
 use crate::driver::Driver;
 use crate::screens::{NORMAL, SMALL, WIDE};
-use crate::sites::usual;
+use crate::sites::{CAST, SITE, site, usual, with};
 
 /// The season screen with an invented answer.
 fn opened(name: &str) -> Driver {
@@ -75,7 +78,9 @@ fn scenario_cases_and_plans_are_there_at_once_and_a_strategy_is_asked_for() {
     let text = driver.text();
     assert_eq!(shown(driver.session()), ("late cool thrift".into(), false), "{text}");
     assert!(text.contains("SOLVED ON THIS CASE"), "{text}");
-    driver.keys("c");
+    driver.keys("p");
+    assert!(driver.text().contains("under another plan"), "{}", driver.text());
+    driver.keys("p c");
     assert!(driver.text().contains("this case was not seen"), "{}", driver.text());
     // r solves on this one
     driver.keys("r");
@@ -167,4 +172,75 @@ fn scenario_without_a_plan_the_screen_says_what_to_do() {
         driver.keys(keys);
     }
     assert!(driver.text().contains("No season"), "{}", driver.text());
+}
+
+/// Says that the season asked for is refused.
+fn refuse(driver: &mut Driver) {
+    let (generation, _) = driver.question(Lane::Ahead).unwrap();
+    let problem = Problem::refused("plan-over", "the plan is over", "add rows for the days ahead");
+    let refused = Err(Failure::Refused(vec![problem], driver.model.system()));
+    driver.send(Event::Sent(Sent::Done(Lane::Ahead, generation, Done::Ahead(refused))));
+}
+
+#[test]
+fn scenario_why_there_is_no_newer_season_is_told_beside_the_old_until_files_change() {
+    let mut driver = opened("season-refused");
+    driver.model.session_mut().unwrap().mix.cell = Cell::Pool;
+    driver.keys("2 Enter").typed("58.5m").keys("Enter 5");
+    refuse(&mut driver);
+    let text = driver.text();
+    assert!(text.contains("no newer") && text.contains("the plan is over"), "{text}");
+    assert!(driver.question(Lane::Ahead).is_none(), "it is not asked over and over");
+    driver.send(Event::FilesChanged);
+    let opening = driver.question(Lane::Quick).unwrap();
+    driver.answer(opening);
+    answer(&mut driver);
+    assert!(driver.session().seasons_now() && !driver.text().contains("the plan is over"));
+}
+
+#[test]
+fn scenario_two_plans_of_one_name_are_two_plans() {
+    let mut driver = Driver::open(Some(&usual("season-names")), NORMAL);
+    driver.held = true;
+    driver.keys("5");
+    answer_with(&mut driver, |ahead| {
+        ahead.answer.others.iter_mut().for_each(|run| run.run.plan = "early".to_owned());
+    });
+    let file = |driver: &Driver| driver.session().season_shown().unwrap().run.plan.file.clone();
+    assert_eq!(file(&driver), "plans/early.csv");
+    driver.keys("p");
+    assert_eq!(file(&driver), "plans/late.csv", "{}", driver.text());
+    driver.keys("p");
+    assert_eq!(file(&driver), "plans/early.csv");
+    let text = driver.keys("t").text();
+    assert_eq!(text.matches("early, middling, best").count(), 2, "{text}");
+}
+
+#[test]
+fn scenario_a_limit_of_the_change_that_no_mix_keeps_is_told_with_the_date() {
+    let mut driver = Driver::open(Some(&usual("season-past")), NORMAL);
+    driver.held = true;
+    driver.symbols(Symbols::Ascii).keys("5");
+    let check = Check { rule: Rule::MaxMoves, of: Of::Whole, item: 0, found: 3.0, bound: 1.0, room: -2.0 };
+    answer_with(&mut driver, |ahead| {
+        let decisions = &mut ahead.answer.main.run.decisions;
+        decisions.iter_mut().for_each(|decision| decision.past.clear());
+        decisions[1].past = vec![check];
+    });
+    assert!(!driver.text().contains("NO MIX KEEPS"), "{}", driver.text());
+    driver.keys("]");
+    assert!(driver.text().contains("NO MIX KEEPS"), "{}", driver.text());
+    driver.keys("]");
+    assert!(!driver.text().contains("NO MIX KEEPS"), "{}", driver.text());
+}
+
+#[test]
+fn scenario_the_buffer_is_told_beside_what_is_asked() {
+    let text = with(SITE, "high: 14,", "high: 14, buffer: 0.5,");
+    let mut driver = Driver::open(Some(&site("season-buffer", &text, &[("a.csv", CAST)])), NORMAL);
+    driver.held = true;
+    driver.keys("5");
+    answer(&mut driver);
+    assert!(driver.text().contains("asked 9.0 to 14.0 C, planned"), "{}", driver.text());
+    assert!(driver.text().contains("9.5 to 13.5 C"), "{}", driver.text());
 }

@@ -1,5 +1,6 @@
 //! Answers as JSON: SI whatever the display, absent is null, full precision.
 
+mod learned;
 mod rank;
 mod rank_shape;
 mod river;
@@ -32,6 +33,7 @@ use super::sentence::{METHOD, caution};
 
 use targets::{conflicts, points, targets};
 
+pub use learned::learned;
 pub use rank::{rank, rank_priced};
 pub use river::river;
 pub use season::season;

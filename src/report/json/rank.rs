@@ -30,15 +30,18 @@ pub fn rank_priced(context: &Context, answer: &RankAnswer, prices: &Prices) -> S
     let change = |c: Change| ChangeJson { days: c.days, range: [c.range.0, c.range.1], told: c.is_told() };
     let one = |price: &Price| PriceJson {
         exhausted_later: price.exhausted.map(change),
-        days_outside_more: change(price.outside),
+        days_outside_more: price.outside.map(change),
+        lasts: price.lasts[1],
     };
     let season = PricesJson {
         plan: prices.plan.clone(),
         case: prices.case.clone(),
+        held_from: prices.from.to_string(),
         held_until: prices.until.to_string(),
         against: if prices.against_now { "now" } else { "first" },
         members: prices.members,
         mixes: prices.mixes.iter().map(one).collect(),
+        warnings: warnings(&prices.notes),
     };
     written(&PricedJson { rank: shape(context, answer, &prices.fingerprint), season })
 }

@@ -213,17 +213,22 @@ pub(super) struct PricedJson {
 pub(super) struct PricesJson {
     pub(super) plan: String,
     pub(super) case: String,
+    pub(super) held_from: String,
     pub(super) held_until: String,
     pub(super) against: &'static str,
     pub(super) members: usize,
     pub(super) mixes: Vec<PriceJson>,
+    pub(super) warnings: Vec<WarningJson>,
 }
 
 /// Days later that it runs out, and days more outside; below zero sooner and fewer.
 #[derive(Serialize)]
 pub(super) struct PriceJson {
     pub(super) exhausted_later: Option<ChangeJson>,
-    pub(super) days_outside_more: ChangeJson,
+    /// Null where a season stops before its plan, so that they cannot be counted.
+    pub(super) days_outside_more: Option<ChangeJson>,
+    /// Whether cold water lasts to the end of the season.
+    pub(super) lasts: bool,
 }
 
 #[derive(Serialize)]

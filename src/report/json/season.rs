@@ -9,7 +9,7 @@ use crate::season::{
 };
 use crate::site::Site;
 use crate::tasks::Context;
-use crate::tasks::season::{SeasonAnswer, SeasonRun};
+use crate::tasks::season::{SeasonAnswer, SeasonRun, Seen};
 use crate::units::{System, in_system};
 
 use super::season_shape::{
@@ -21,9 +21,9 @@ use super::{caution, head, moved_gates, setting, warnings, written};
 /// The answer of `season`: the season spoken of at the top level, the others under `runs`.
 pub fn season(context: &Context, answer: &SeasonAnswer) -> String {
     let site = context.site();
-    let mut spoken = run(site, &answer.main);
+    let mut spoken = run(site, answer, &answer.main);
     // the same plan and strategy in the other cases belong to what is said of the targets
-    let others = answer.cases().into_iter().filter(|r| r.run.case != answer.main.run.case);
+    let others = answer.cases().into_iter().filter(|r| !std::ptr::eq(*r, &raw const answer.main));
     spoken.targets.extend(others.flat_map(|r| targets(site, r)));
     let shown = SeasonJson {
         head: head(context, &answer.fingerprint, &[]),
@@ -31,14 +31,14 @@ pub fn season(context: &Context, answer: &SeasonAnswer) -> String {
         decides: answer.decides.to_string(),
         decide_days: answer.decide_days,
         run: spoken,
-        runs: answer.others.iter().map(|r| run(site, r)).collect(),
+        runs: answer.others.iter().map(|r| run(site, answer, r)).collect(),
         warnings: warnings(&answer.notes),
         caution: caution(),
     };
     written(&shown)
 }
 
-fn run(site: &Site, of: &SeasonRun) -> RunJson {
+fn run(site: &Site, answer: &SeasonAnswer, of: &SeasonRun) -> RunJson {
     let Outcome { exhausted, cold, score, .. } = &of.outcome;
     let outcome = &of.outcome;
     RunJson {
@@ -49,6 +49,7 @@ fn run(site: &Site, of: &SeasonRun) -> RunJson {
         weather: of.skies.from.clone(),
         strategy: of.run.strategy.clone(),
         foresight: of.foresight,
+        weather_seen: answer.seen(of) != Seen::Nothing,
         days: (of.run.days.iter().enumerate()).map(|(i, d)| day(site, of, d, cold.first(), i)).collect(),
         gates: outcome.gates.iter().map(|g| gate(site, g)).collect(),
         exhausted_on: on(exhausted),
@@ -57,6 +58,7 @@ fn run(site: &Site, of: &SeasonRun) -> RunJson {
         under_reserve_on: outcome.under_reserve.as_ref().and_then(on),
         targets: targets(site, of),
         score: ScoreJson {
+            days_not_reached: score.lost,
             worst_c: score.worst_c,
             days_outside: score.days_outside,
             degree_days_outside: score.degree_days,
@@ -214,6 +216,7 @@ fn decision(site: &Site, outcome: &Outcome, of: &Decision) -> DecisionJson {
         moves: of.moves,
         crew_hours: of.crew_hours,
         moved: moves.map_or_else(Vec::new, |m| moved_gates(site, &m.moved)),
+        past: of.past.iter().map(|check| said(&check.words(site))).collect(),
         book_by: moves.and_then(|m| m.book_by).map(|d| d.to_string()),
     }
 }

@@ -28,6 +28,8 @@ pub(super) struct RunJson {
     pub(super) strategy: String,
     /// Solved with this very case in view: no evidence.
     pub(super) foresight: bool,
+    /// Solved with this weather in view, under this plan or another.
+    pub(super) weather_seen: bool,
     pub(super) days: Vec<DayJson>,
     pub(super) gates: Vec<GateJson>,
     /// Null where it does not run out by the end of the season; see `exhausted_unknown`.
@@ -123,6 +125,8 @@ pub(super) struct TargetJson {
 
 #[derive(Serialize)]
 pub(super) struct ScoreJson {
+    /// Days of the plan after the season stops: nothing is counted of them.
+    pub(super) days_not_reached: u32,
     pub(super) worst_c: f64,
     pub(super) days_outside: u32,
     pub(super) degree_days_outside: f64,
@@ -169,6 +173,8 @@ pub(super) struct DecisionJson {
     pub(super) moves: usize,
     pub(super) crew_hours: f64,
     pub(super) moved: Vec<super::shape::MovedJson>,
+    /// Limits of the change that it breaks, since no mix keeps them.
+    pub(super) past: Vec<String>,
     pub(super) book_by: Option<String>,
 }
 

@@ -15,7 +15,7 @@ use unicode_width::UnicodeWidthStr;
 use crate::problem::{Problem, Weight, harmless};
 use crate::tasks::rank::RankAnswer;
 use crate::tasks::river::RiverAnswer;
-use crate::tasks::season::{Prices, SeasonAnswer};
+use crate::tasks::season::{LearnAnswer, Prices, SeasonAnswer};
 use crate::tasks::{Context, Freshness, MixAnswer, PoolAnswer};
 use crate::units::{Dimension, System, show};
 
@@ -70,7 +70,7 @@ pub fn rank_priced(context: &Context, answer: &RankAnswer, prices: &Prices) -> S
     let mut out = head(context, &prices.fingerprint);
     out.push_str(&rank::body(context, answer));
     out.push('\n');
-    out.push_str(&season::price::block(prices));
+    out.push_str(&season::price::block(context, prices));
     out.push_str(&wrapped(caution(), 0));
     out
 }
@@ -87,6 +87,14 @@ pub fn river(context: &Context, answer: &RiverAnswer) -> String {
 pub fn season(context: &Context, answer: &SeasonAnswer) -> String {
     let mut out = head(context, &answer.fingerprint);
     out.push_str(&season::body(context, answer));
+    out.push_str(&wrapped(caution(), 0));
+    out
+}
+
+/// The answer of `season --learn`.
+pub fn learned(context: &Context, answer: &LearnAnswer) -> String {
+    let mut out = head(context, &answer.fingerprint);
+    out.push_str(&season::learned::body(context, answer));
     out.push_str(&wrapped(caution(), 0));
     out
 }

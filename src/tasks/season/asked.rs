@@ -167,6 +167,11 @@ impl Case {
         }
     }
 
+    /// Whether it is the same: a shifted case may bear the name of a year.
+    pub(super) fn is(&self, other: &Self) -> bool {
+        self.name() == other.name() && matches!(self, Self::Year(_)) == matches!(other, Self::Year(_))
+    }
+
     /// Its air over the days of a plan.
     pub(super) fn skies(
         &self,

@@ -12,7 +12,7 @@ use std::sync::Arc;
 use chrono::NaiveDate;
 
 use crate::problem::Problem;
-use crate::season::{Outcome, Plan, Run, Skies};
+use crate::season::{Layers, Outcome, Plan, Run, Skies};
 
 use super::{Context, Failure};
 
@@ -42,6 +42,17 @@ impl SeasonRun {
     }
 }
 
+/// What was in view when the gates of a season were chosen.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
+pub enum Seen {
+    /// Nothing of it.
+    Nothing,
+    /// Its weather, under another plan.
+    Weather,
+    /// All of it: foresight, and no evidence.
+    All,
+}
+
 /// The answer of `season`.
 #[derive(Debug, Clone)]
 pub struct SeasonAnswer {
@@ -52,7 +63,7 @@ pub struct SeasonAnswer {
     pub others: Vec<SeasonRun>,
     /// The first day.
     pub begins: NaiveDate,
-    /// The first day on which gates may be moved.
+    /// The first day on which gates may be moved: that of the cast where nobody knows what is set now.
     pub decides: NaiveDate,
     /// Days between decisions.
     pub decide_days: u32,
@@ -71,10 +82,22 @@ impl SeasonAnswer {
     /// The plan and the strategy spoken of in every case, unseen ones first.
     pub fn cases(&self) -> Vec<&SeasonRun> {
         let of = &self.main.run;
-        let mut out: Vec<&SeasonRun> =
-            self.runs().filter(|r| r.run.plan == of.plan && r.run.strategy == of.strategy).collect();
+        let mut out: Vec<&SeasonRun> = self
+            .runs()
+            .filter(|r| r.plan.file == self.main.plan.file && r.run.strategy == of.strategy)
+            .collect();
         out.sort_by_key(|r| r.foresight);
         out
+    }
+
+    /// How much its gates were chosen in view of.
+    pub fn seen(&self, of: &SeasonRun) -> Seen {
+        let main = &self.main.run;
+        match (of.foresight, self.main.foresight) {
+            (true, _) => Seen::All,
+            (_, true) if of.run.strategy == main.strategy && of.run.case == main.case => Seen::Weather,
+            _ => Seen::Nothing,
+        }
     }
 }
 
@@ -87,6 +110,7 @@ pub fn season(
     asked: &SeasonAsked,
     progress: &(dyn Fn(f64) -> ControlFlow<()> + Sync),
 ) -> Result<SeasonAnswer, Failure> {
+    holds_water(context)?;
     let mut notes = Vec::new();
     let now = super::rank::now(context, &asked.now, &mut notes)?;
     let understood = asked::understood(context, asked)?;
@@ -101,9 +125,20 @@ pub fn season(
         main,
         others,
         begins: understood.begins,
-        decides: understood.decides,
+        decides: if now.is_some() { understood.decides } else { understood.begins },
         decide_days: understood.decide_days,
         notes,
         fingerprint: understood.fingerprint.clone(),
     })
+}
+
+/// Refuses a cast that shows no water: no season can begin with it.
+fn holds_water(context: &Context) -> Result<(), Failure> {
+    let site = context.site();
+    if Layers::of_profile(site, &context.profile, site.season.layer_m).is_some() {
+        return Ok(());
+    }
+    let words = "the cast shows no water for a season to begin with";
+    let cure = "give a cast under a pool above the bed of the volume table";
+    Err(Failure::Refused(vec![Problem::refused("no-water", words, cure)], context.system))
 }

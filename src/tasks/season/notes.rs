@@ -1,6 +1,11 @@
 //! What a season assumes, and what it does not look at.
 
-use crate::problem::Problem;
+use std::collections::BTreeSet;
+
+use chrono::Datelike;
+
+use crate::problem::{Problem, Weight};
+use crate::season::{Choosing, Plan};
 use crate::tasks::Context;
 use crate::units::say;
 
@@ -8,8 +13,10 @@ use super::asked::{Case, Understood};
 
 /// Notes on the plans, the cases and the model.
 pub(super) fn notes(context: &Context, of: &Understood) -> Vec<Problem> {
-    let mut out: Vec<Problem> = of.plan.notes.clone();
-    out.extend(of.refused.iter().map(left_out));
+    let mut out = of_plans(of);
+    out.extend(before_the_plan(of));
+    out.extend(schedule(of));
+    out.extend(years(context, of));
     out.extend(of.over.iter().map(|plan| {
         let words = format!("the plan {} tells days that are over, and is not among the others", plan.file);
         Problem::note("plan-past", words)
@@ -23,6 +30,76 @@ pub(super) fn notes(context: &Context, of: &Understood) -> Vec<Problem> {
     let words = "flow changes that the plan itself asks for are not held against their limits, and no perturbed cases \
                  stand behind a season: its figures are those of one pool under one weather";
     out.push(Problem::note("season-not-checked", words));
+    out
+}
+
+/// What the plan assumes, and what is to be known of those beside it.
+pub(super) fn of_plans(of: &Understood) -> Vec<Problem> {
+    let mut out: Vec<Problem> = of.plan.notes.clone();
+    out.extend(of.refused.iter().map(left_out));
+    let all: Vec<&Plan> = std::iter::once(&of.plan).chain(&of.other_plans).map(AsRef::as_ref).collect();
+    for (i, plan) in all.iter().enumerate() {
+        if let Some(same) = all.iter().take(i).find(|other| other.name == plan.name) {
+            let words =
+                format!("the plans {} and {} have the same name, `{}`", same.file, plan.file, plan.name);
+            out.push(Problem::flag("plan-name", words, "give one of them another `# name:`"));
+        }
+    }
+    out
+}
+
+/// What holds where the cast is older than the plan.
+fn before_the_plan(of: &Understood) -> Option<Problem> {
+    let (first, _) = of.plan.span()?;
+    let words = format!(
+        "the plan begins on {first}: from {} to then its first inflow and release hold, or its pool is gone to in a \
+         straight line",
+        of.begins
+    );
+    (first > of.begins).then(|| Problem::note("before-plan", words))
+}
+
+/// A gate schedule whose changes do not lie in the season.
+fn schedule(of: &Understood) -> Option<Problem> {
+    let Choosing::Schedule(schedule) = &of.choosing else { return None };
+    let (_, last) = of.plan.span()?;
+    let dates = || schedule.changes.iter().map(|change| change.0);
+    let (words, cure) = if !dates().any(|date| of.begins <= date && date <= last) {
+        let words = format!("no change of the schedule lies in the season, {} to {last}", of.begins);
+        (words, "name a schedule of this season")
+    } else if let Some(first) = dates().next().filter(|first| *first > of.decides) {
+        let words = format!(
+            "the schedule begins on {first}: until then what is set now stays, else the best mix of the day"
+        );
+        (words, "give a row for the first day")
+    } else {
+        return None;
+    };
+    Some(Problem::flag("schedule-days", words, cure).in_file(&schedule.file))
+}
+
+/// What became of the weather of years.
+fn years(context: &Context, of: &Understood) -> Vec<Problem> {
+    let Some(years) = context.folder.years() else { return Vec::new() };
+    let refused = years
+        .problems
+        .iter()
+        .filter(|p| p.weight == Weight::Refused)
+        .map(|problem| Problem { weight: Weight::Flag, ..problem.clone() });
+    let mut out: Vec<Problem> = refused.collect();
+    let told: BTreeSet<i32> = years.weather.iter().flat_map(|w| w.days.keys()).map(Datelike::year).collect();
+    let is_case =
+        |year: i32| of.cases.iter().any(|c| matches!(c, Case::Year(skies) if skies.year == Some(year)));
+    let lost: Vec<String> = told.into_iter().filter(|year| !is_case(*year)).map(|y| y.to_string()).collect();
+    if let (false, Some((_, last))) = (lost.is_empty(), of.plan.span()) {
+        let words = format!(
+            "years of the record that do not hold every day from {} to {} are no cases: {}",
+            of.begins.format("%m-%d"),
+            last.format("%m-%d"),
+            lost.join(", ")
+        );
+        out.push(Problem::note("years-left-out", words));
+    }
     out
 }
 

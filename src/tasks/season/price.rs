@@ -5,11 +5,14 @@ use std::ops::ControlFlow;
 use chrono::{Days, NaiveDate};
 
 use crate::mix::{Perturbed, Setting};
+use crate::problem::Problem;
 use crate::season::{self, PRICE_MEMBERS, Price, Pricing};
 use crate::tasks::rank::RankAnswer;
 use crate::tasks::{Context, Failure};
 
 use super::asked::{SeasonAsked, understood};
+use super::holds_water;
+use super::notes::of_plans;
 
 /// What the mixes of a ranking cost by the end of the season.
 #[derive(Debug, Clone, PartialEq)]
@@ -20,12 +23,16 @@ pub struct Prices {
     pub case: String,
     /// Until when a mix is held: the day of the next decision.
     pub until: NaiveDate,
+    /// The day decided for, from which on a mix is held.
+    pub from: NaiveDate,
     /// Prices are told against the setting now; where it is not known, against the first mix.
     pub against_now: bool,
     /// Perturbed cases behind the ranges.
     pub members: usize,
     /// Price of every mix shown, in the order of the ranking.
     pub mixes: Vec<Price>,
+    /// What the plan assumes, and what was assumed of the days before the day decided for.
+    pub notes: Vec<Problem>,
     /// Fingerprint of the inputs, plans and all.
     pub fingerprint: String,
 }
@@ -40,6 +47,7 @@ pub fn prices(
     asked: &SeasonAsked,
     progress: &(dyn Fn(f64) -> ControlFlow<()> + Sync),
 ) -> Result<Prices, Failure> {
+    holds_water(context)?;
     let of = understood(context, asked)?;
     let skies = of
         .case
@@ -62,13 +70,23 @@ pub fn prices(
     if now.is_some() && !mixes.is_empty() {
         mixes.remove(0);
     }
+    let mut notes = of_plans(&of);
+    if now.is_none() && of.begins < of.decides {
+        let words = format!(
+            "what is set now is not known: from the cast of {} to {} no. 1 is held",
+            of.begins, of.decides
+        );
+        notes.push(Problem::note("now-unknown", words));
+    }
     Ok(Prices {
         plan: of.plan.name.clone(),
         case: of.case.name().to_owned(),
+        from: of.decides,
         until: of.decides.checked_add_days(Days::new(of.decide_days.into())).unwrap_or(of.decides),
         against_now: now.is_some(),
         members: PRICE_MEMBERS.min(context.site().band.members),
         mixes,
+        notes,
         fingerprint: of.fingerprint,
     })
 }

@@ -14,8 +14,8 @@ use crate::tasks::{Context, Failure};
 use super::SeasonRun;
 use super::asked::{Case, Understood};
 
-/// Share of the work that the season spoken of counts for: a schedule is solved over some forty seasons (choice).
-const MAIN_SHARE: f64 = 0.6;
+/// Seasons that solving a schedule counts for (choice: it is solved over some forty).
+const SOLVED: f64 = 40.0;
 
 /// Whoever is told how much is done.
 type Progress<'a> = &'a (dyn Fn(f64) -> ControlFlow<()> + Sync);
@@ -35,8 +35,9 @@ impl Table<'_> {
     pub(super) fn main(&self, progress: Progress) -> Result<SeasonRun, Failure> {
         let of = self.understood;
         let skies = self.skies(&of.plan, &of.case).map_err(|problem| self.refused(problem))?;
-        let mut main =
-            self.run(&(of.plan.clone(), skies, of.choosing.clone()), &|done| progress(MAIN_SHARE * done))?;
+        let mut main = self.run(&(of.plan.clone(), skies, of.choosing.clone()), &|done| {
+            progress(self.main_share() * done)
+        })?;
         main.foresight = matches!(of.choosing, Choosing::By(Strategy::Thrift));
         Ok(main)
     }
@@ -57,7 +58,7 @@ impl Table<'_> {
             Ok(skies) => jobs.push((plan.clone(), skies, choosing)),
             Err(problem) => notes.push(Problem::flag("season-left-out", problem.words, problem.cure)),
         };
-        for case in of.cases.iter().filter(|case| case.name() != of.case.name()) {
+        for case in of.cases.iter().filter(|case| !case.is(&of.case)) {
             put(&of.plan, case, again.clone());
         }
         for plan in &of.other_plans {
@@ -69,6 +70,7 @@ impl Table<'_> {
                 put(&of.plan, &of.case, Choosing::By(strategy));
             }
         }
+        let main_share = self.main_share();
         let done = Mutex::new(vec![0.0; jobs.len()]);
         let tell = |job: usize, share: f64| {
             let all = done.lock().map_or(0.0, |mut all| {
@@ -77,9 +79,17 @@ impl Table<'_> {
                 }
                 all.iter().sum::<f64>() / all.len() as f64
             });
-            progress(MAIN_SHARE + (1.0 - MAIN_SHARE) * all)
+            progress(main_share + (1.0 - main_share) * all)
         };
         jobs.par_iter().enumerate().map(|(i, job)| self.run(job, &|share| tell(i, share))).collect()
+    }
+
+    /// Share of the work that the season spoken of is.
+    fn main_share(&self) -> f64 {
+        let of = self.understood;
+        let main = if matches!(of.choosing, Choosing::By(Strategy::Thrift)) { SOLVED } else { 1.0 };
+        // the other cases and plans, and the other one or two strategies
+        main / (main + (of.cases.len() + of.other_plans.len() + 1) as f64)
     }
 
     fn run(&self, (plan, skies, choosing): &Job, progress: Progress) -> Result<SeasonRun, Failure> {

@@ -16,7 +16,7 @@ use crate::units::System;
 pub use board::{Cell, Row, rows};
 pub use draft::{Draft, History};
 pub use field::{Field, Typed, Value};
-pub use season::{Ahead, SeasonPage, SeasonQuestion, SeasonShown, SeasonView};
+pub use season::{Ahead, Priced, SeasonPage, SeasonQuestion, SeasonShown, SeasonView};
 pub use session::{
     Downstream, MixView, Page, PoolView, RankView, Ranked, RiverPage, RiverView, Session, Shown, Whole,
 };
@@ -216,6 +216,11 @@ impl Model {
     pub fn system(&self) -> System {
         let of_site = self.session().map(|s| s.base.site().units.system());
         self.likes.units.or(self.asked.units).or(of_site).unwrap_or_default()
+    }
+
+    /// Whether what is computed in the lane of the season is the price of mixes.
+    pub fn prices_mixes(&self) -> bool {
+        self.ahead.is_some() && self.session().is_some_and(|s| s.season_asked.is_none())
     }
 
     /// Whether anything is being computed.

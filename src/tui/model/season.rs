@@ -4,7 +4,7 @@ use std::sync::Arc;
 
 use chrono::NaiveDate;
 
-use crate::tasks::season::{SeasonAnswer, SeasonAsked, SeasonRun};
+use crate::tasks::season::{Prices, SeasonAnswer, SeasonAsked, SeasonRun};
 use crate::tasks::{Changed, Context};
 
 use super::session::Session;
@@ -49,17 +49,17 @@ pub struct Ahead {
 impl Ahead {
     /// The season that something asked speaks of, where it is among these.
     fn of(&self, asked: &SeasonAsked) -> Option<&SeasonRun> {
-        let (main, own) = (&self.answer.main.run, &self.question.asked);
+        let (main, own) = (&self.answer.main, &self.question.asked);
         // a name left open means what it meant when these were asked
         let name = |asked: &Option<String>, own: &Option<String>, main: &str| {
             if asked == own { Some(main.to_owned()) } else { asked.clone() }
         };
         let names = [
-            name(&asked.plan, &own.plan, &main.plan)?,
-            name(&asked.case, &own.case, &main.case)?,
-            name(&asked.strategy, &own.strategy, &main.strategy)?,
+            name(&asked.plan, &own.plan, &main.plan.file)?,
+            name(&asked.case, &own.case, &main.run.case)?,
+            name(&asked.strategy, &own.strategy, &main.run.strategy)?,
         ];
-        self.answer.runs().find(|r| [&r.run.plan, &r.run.case, &r.run.strategy] == names.each_ref())
+        self.answer.runs().find(|r| [&r.plan.file, &r.run.case, &r.run.strategy] == names.each_ref())
     }
 
     /// The season that comes nearest to what is asked: of its plan, then of its strategy, then of its case.
@@ -67,11 +67,23 @@ impl Ahead {
         let differs = |name: &Option<String>, own: &str| name.as_ref().is_some_and(|n| n != own);
         let far = |r: &&SeasonRun| {
             let run = &r.run;
-            let of = [(&asked.plan, &run.plan), (&asked.strategy, &run.strategy), (&asked.case, &run.case)];
+            let of =
+                [(&asked.plan, &r.plan.file), (&asked.strategy, &run.strategy), (&asked.case, &run.case)];
             of.map(|(name, own)| differs(name, own))
         };
         self.answer.runs().min_by_key(far).unwrap_or(&self.answer.main)
     }
+}
+
+/// What the mixes of a ranking cost by the end of the season, with what it was computed for.
+#[derive(Debug, Clone)]
+pub struct Priced {
+    /// The files and changes of the ranking.
+    pub context: Arc<Context>,
+    /// Plan and case as far as they were chosen.
+    pub asked: SeasonAsked,
+    /// The prices.
+    pub prices: Prices,
 }
 
 /// What the season screen shows.
@@ -138,6 +150,18 @@ impl Session {
     /// Whether the season shown is of what is set and chosen now.
     pub fn seasons_now(&self) -> bool {
         self.season_shown().is_some_and(|s| !s.old)
+    }
+
+    /// What prices of mixes are asked with: plan and case as chosen on the season screen.
+    pub fn price_asked(&self) -> SeasonAsked {
+        SeasonAsked { strategy: None, ..self.season.chosen.clone() }
+    }
+
+    /// The prices of the ranking there is, under the plan and the case chosen.
+    pub fn prices_now(&self) -> Option<&Prices> {
+        let (priced, ranked) = (self.priced.as_ref()?, self.ranked.as_ref()?);
+        let is = Arc::ptr_eq(&priced.context, &ranked.context) && priced.asked == self.price_asked();
+        is.then_some(&priced.prices)
     }
 
     /// The answers of the same files and changes as one of them, the newest first.

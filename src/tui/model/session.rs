@@ -10,7 +10,7 @@ use super::super::work::Anew;
 use super::Screen;
 use super::board::{Cell, Row, rows};
 use super::draft::{Draft, History};
-use super::season::{Ahead, SeasonQuestion, SeasonView};
+use super::season::{Ahead, Priced, SeasonQuestion, SeasonView};
 use super::tries::taken;
 
 /// Pool and settings as they were computed together.
@@ -80,6 +80,8 @@ pub enum Page {
     Rejected,
     /// The answers beyond the list.
     Others,
+    /// What the mixes cost by the end of the season.
+    Prices,
 }
 
 /// Where the user is on the rank screen.
@@ -174,6 +176,10 @@ pub struct Session {
     pub season_wrong: Option<Failure>,
     /// The season screen.
     pub season: SeasonView,
+    /// What the mixes of a ranking cost by the end of the season: the last there is.
+    pub priced: Option<Priced>,
+    /// Why the newest question about it has no answer.
+    pub price_wrong: Option<Failure>,
 }
 
 impl Session {
@@ -206,6 +212,8 @@ impl Session {
             season_asked: None,
             season_wrong: None,
             season: SeasonView::default(),
+            priced: None,
+            price_wrong: None,
         }
     }
 

@@ -8,9 +8,10 @@ use crate::tasks::{Context, Failure, Given};
 use crate::units::{Dimension, System, figure};
 
 use super::super::keys::Action;
-use super::super::model::{Field, Model, Over, Page, Ranked, Screen, Session, Typed, Whole, taken};
+use super::super::model::{Field, Model, Over, Page, Priced, Ranked, Screen, Session, Typed, Whole, taken};
+use super::super::work::Work;
 use super::mix::TRIES;
-use super::{Effect, ask_rank, change, complain, rank_rows, say};
+use super::{Effect, ask, ask_rank, change, complain, rank_rows, say};
 
 /// Lines of a page (choice).
 const PAGE: usize = 5;
@@ -24,6 +25,12 @@ pub(super) fn act(model: &mut Model, action: Action) -> Vec<Effect> {
         Action::Enter if page == Page::List => return take(model),
         Action::Enter => turn(model, Page::List),
         Action::Rejected => turn(model, if page == Page::Rejected { Page::List } else { Page::Rejected }),
+        Action::Prices if page == Page::Prices => turn(model, Page::List),
+        Action::Prices => {
+            turn(model, Page::Prices);
+            return ask_prices(model).into_iter().collect();
+        }
+        Action::Again if page == Page::Prices => return ask_prices(model).into_iter().collect(),
         Action::Others => turn(model, if page == Page::Others { Page::List } else { Page::Others }),
         Action::Drill => model.over = Some(Over::Drill(0)),
         Action::Order => model.over = Some(Over::Order(0)),
@@ -76,8 +83,42 @@ pub(super) fn ranked(model: &mut Model, ranked: Result<Box<(Arc<Context>, RankAn
         let best = answer.mixes.first().cloned().map(Box::new);
         session.whole = Some(Whole { base: Arc::clone(&base), draft: draft.clone(), best });
     }
+    // why an earlier ranking has no prices says nothing of this one
+    session.price_wrong = None;
     session.ranked = Some(Ranked { base, draft, context, answer });
     session.rank_wrong = None;
+}
+
+/// Asks what the mixes of the ranking cost by the end of the season, where that is not known and not on its way.
+fn ask_prices(model: &mut Model) -> Option<Effect> {
+    if model.prices_mixes() {
+        return None;
+    }
+    if model.session().is_none_or(|s| !s.ranks_now()) {
+        complain(model, "the ranking is from before: prices wait for the new one; then r");
+        return None;
+    }
+    let session = model.session_mut().filter(|s| s.prices_now().is_none())?;
+    let ranked = session.ranked.as_ref()?;
+    let work = Work::Prices {
+        context: Arc::clone(&ranked.context),
+        ranking: Box::new(ranked.answer.clone()),
+        asked: session.price_asked(),
+    };
+    // a season under way gives way to them
+    (session.season_asked, session.price_wrong) = (None, None);
+    Some(ask(model, work))
+}
+
+/// Takes the prices.
+pub(super) fn priced(model: &mut Model, priced: Result<Box<Priced>, Failure>) -> Vec<Effect> {
+    if let Some(session) = model.session_mut() {
+        match priced {
+            Ok(priced) => (session.priced, session.price_wrong) = (Some(*priced), None),
+            Err(failure) => session.price_wrong = Some(failure),
+        }
+    }
+    super::season::ask(model).into_iter().collect()
 }
 
 /// Which gates stand open, and how far.

@@ -1,5 +1,7 @@
 //! The season screen: asking, stopping, choosing plan, case, strategy and date.
 
+use std::collections::BTreeSet;
+
 use chrono::{Days, NaiveDate};
 
 use crate::problem::harmless;
@@ -57,8 +59,10 @@ pub(super) fn act(model: &mut Model, action: Action) -> Vec<Effect> {
 pub(super) fn ask(model: &mut Model) -> Option<Effect> {
     let session = model.session().filter(|s| s.screen == Screen::Season)?;
     let question = session.season_question();
-    let waits = model.ahead.is_some() && session.season_asked.as_ref().is_some_and(|q| q.is(&question));
-    if waits || session.season_wrong.is_some() || session.seasons_now() {
+    // why an earlier question has no answer says nothing of this one
+    let asked = session.season_asked.as_ref().is_some_and(|q| q.is(&question));
+    let answered = asked && (model.ahead.is_some() || session.season_wrong.is_some());
+    if answered || session.seasons_now() {
         return None;
     }
     asking(model)
@@ -94,11 +98,20 @@ pub(super) fn told(model: &mut Model, told: Result<Box<Ahead>, Failure>) -> Vec<
 
 /// Stops what is under way.
 pub(super) fn stop(model: &mut Model) -> Option<Effect> {
+    let pricing = model.prices_mixes();
     let under = model.ahead.take()?;
     if let Some(session) = model.session_mut() {
-        session.season_wrong = Some(Failure::Stopped);
+        let wrong = if pricing { &mut session.price_wrong } else { &mut session.season_wrong };
+        *wrong = Some(Failure::Stopped);
     }
-    say(model, "the season is stopped; r on its screen computes it");
+    say(
+        model,
+        if pricing {
+            "the prices are stopped; p on the rank screen computes them"
+        } else {
+            "the season is stopped; r on its screen computes it"
+        },
+    );
     Some(Effect::Stop(Lane::Ahead, under.generation + 1))
 }
 
@@ -168,13 +181,10 @@ fn cases(shown: &SeasonShown) -> Vec<String> {
     names
 }
 
-/// The plans of an answer, by the names of their files.
+/// The plans of an answer by their files: two may have one name.
 fn plans(shown: &SeasonShown) -> Vec<String> {
-    let mut plans: Vec<(String, String)> =
-        shown.ahead.answer.runs().map(|r| (r.plan.file.clone(), r.run.plan.clone())).collect();
-    plans.sort();
-    plans.dedup();
-    plans.into_iter().map(|(_, name)| name).collect()
+    let files: BTreeSet<&String> = shown.ahead.answer.runs().map(|r| &r.plan.file).collect();
+    files.into_iter().cloned().collect()
 }
 
 fn strategies(_: &SeasonShown) -> Vec<String> {
@@ -186,7 +196,7 @@ fn case_of(shown: &SeasonShown) -> String {
 }
 
 fn plan_of(shown: &SeasonShown) -> String {
-    shown.run.run.plan.clone()
+    shown.run.plan.file.clone()
 }
 
 fn strategy_of(shown: &SeasonShown) -> String {

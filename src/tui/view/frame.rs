@@ -251,7 +251,8 @@ pub(super) fn status(model: &Model, session: &Session) -> (String, Role) {
     if let Some(under) = model.ahead.as_ref().filter(|under| is_long(model, under)) {
         let old = session.screen == Screen::Season && session.season_shown().is_some_and(|s| s.old);
         let before = if old { "; what is shown is from before" } else { "" };
-        return (format!("season {:.0} %{before}, Esc stops", 100.0 * under.done), Role::Warn);
+        let what = if model.prices_mixes() { "prices" } else { "season" };
+        return (format!("{what} {:.0} %{before}, Esc stops", 100.0 * under.done), Role::Warn);
     }
     let broken = broken_limits(session);
     if session.wrong.is_none() && session.screen == Screen::Mix && broken > 0 {

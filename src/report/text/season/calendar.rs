@@ -1,11 +1,13 @@
 //! The calendar: when gates can be used, what is moved, what is within reach.
 
+use chrono::NaiveDate;
+
 use crate::mix::limits::Move;
 use crate::problem::harmless;
-use crate::season::{GateLife, GateMoves, Reached};
+use crate::season::{Decision, GateLife, Reached};
 use crate::site::Site;
 use crate::tasks::Context;
-use crate::tasks::season::{SeasonAnswer, SeasonRun};
+use crate::tasks::season::SeasonRun;
 use crate::units::{Dimension, System, figure, in_system};
 
 use super::super::gates::moved;
@@ -19,11 +21,11 @@ const RANGE: usize = 16;
 
 /// When every gate can be used: first and last day, why not longer, whom to tell by when.
 pub fn gates(context: &Context, run: &SeasonRun, system: System) -> Vec<String> {
-    run.outcome.gates.iter().map(|life| gate(context.site(), life, system)).collect()
+    run.outcome.gates.iter().map(|life| gate(context, life, system)).collect()
 }
 
-fn gate(site: &Site, life: &GateLife, system: System) -> String {
-    let name = site.outlets.get(life.outlet).map_or_else(String::new, |o| harmless(&o.name));
+fn gate(context: &Context, life: &GateLife, system: System) -> String {
+    let name = context.site().outlets.get(life.outlet).map_or_else(String::new, |o| harmless(&o.name));
     let reason = life.reason.as_ref().map(|(_, words)| harmless(&in_system(words, system)));
     let Some(first) = life.first_day else {
         return format!("{name:<NAME$}not on any day: {}", reason.unwrap_or_default());
@@ -31,13 +33,13 @@ fn gate(site: &Site, life: &GateLife, system: System) -> String {
     let Some(last) = life.last_day else {
         return format!("{name:<NAME$}from {first} to the end");
     };
-    let book = life.book_by.map_or_else(String::new, |by| format!("; open then: book its crew by {by}"));
+    let book = life.book_by.map_or_else(String::new, |by| format!("; open then: {}", book(context, by)));
     format!("{name:<NAME$}from {first} to {last}; then {}{book}", reason.unwrap_or_default())
 }
 
 /// What is moved when, by whom, and by when the crew must be told.
-pub fn moves(context: &Context, answer: &SeasonAnswer, run: &SeasonRun, system: System) -> Vec<String> {
-    let outcome = &run.outcome;
+pub fn moves(context: &Context, run: &SeasonRun, system: System) -> Vec<String> {
+    let (site, outcome) = (context.site(), &run.outcome);
     let mut out = vec![format!(
         "{} gates moved on {}, {:.1} crew hours",
         outcome.moves,
@@ -48,9 +50,23 @@ pub fn moves(context: &Context, answer: &SeasonAnswer, run: &SeasonRun, system: 
         let forced = on.forced.as_ref().map_or_else(String::new, |(_, words)| {
             format!("; forced by {}", harmless(&in_system(words, system)))
         });
-        format!("{}  {}{forced}{}", on.date, moved_words(context.site(), &on.moved, system), book(answer, on))
+        let by = on.book_by.map_or_else(String::new, |by| format!("; {}", book(context, by)));
+        let decision = run.run.decisions.iter().find(|d| d.date == on.date);
+        let past =
+            decision.and_then(|d| past(site, d, system)).map_or_else(String::new, |p| format!("; {p}"));
+        format!("{}  {}{forced}{by}{past}", on.date, moved_words(site, &on.moved, system))
     }));
+    // a limit of the change can be broken where no gate moves
+    let still = run.run.decisions.iter().filter(|d| !outcome.calendar.iter().any(|on| on.date == d.date));
+    out.extend(still.filter_map(|d| Some(format!("{}  no gate moved; {}", d.date, past(site, d, system)?))));
     out
+}
+
+/// Limits of the change that a decision breaks, since no mix keeps them; `None` where it breaks none.
+pub fn past(site: &Site, of: &Decision, system: System) -> Option<String> {
+    let words: Vec<String> =
+        of.past.iter().map(|check| harmless(&in_system(&check.words(site), system))).collect();
+    (!words.is_empty()).then(|| format!("NO MIX KEEPS {}", words.join(", NOR ")))
 }
 
 /// Which gates move, from where to where.
@@ -59,12 +75,9 @@ pub fn moved_words(site: &Site, moves: &[Move], system: System) -> String {
 }
 
 /// By when the crew must be told; said where that day is past already.
-fn book(answer: &SeasonAnswer, on: &GateMoves) -> String {
-    match on.book_by {
-        None => String::new(),
-        Some(by) if by < answer.decides => format!("; book the crew by {by}, WHICH IS PAST"),
-        Some(by) => format!("; book the crew by {by}"),
-    }
+fn book(context: &Context, by: NaiveDate) -> String {
+    let past = if by < context.on.date_naive() { ", WHICH IS PAST" } else { "" };
+    format!("book the crew by {by}{past}")
 }
 
 /// The range within reach on every day of decision against the range asked: a line each.

@@ -3,7 +3,6 @@
 use chrono::{Datelike, NaiveDate};
 
 use crate::season::ColdWater;
-use crate::tasks::Context;
 use crate::tasks::season::SeasonRun;
 use crate::units::System;
 
@@ -15,7 +14,7 @@ const DATE: usize = 12;
 const CELL: usize = 18;
 
 /// Cold water below each threshold on the first and the middle of every month, and on the last day.
-pub fn cold(context: &Context, run: &SeasonRun, system: System) -> Vec<String> {
+pub fn cold(run: &SeasonRun, system: System) -> Vec<String> {
     let mut out = Vec::new();
     for water in &run.outcome.cold {
         out.extend(table(water, system));
@@ -23,7 +22,7 @@ pub fn cold(context: &Context, run: &SeasonRun, system: System) -> Vec<String> {
     if run.outcome.cold.is_empty() {
         out.push("the site file names no threshold of cold water (cold_water)".to_owned());
     }
-    out.extend(left(context, run, system));
+    out.extend(left(run, system));
     out
 }
 
@@ -47,16 +46,19 @@ fn is_shown(date: NaiveDate) -> bool {
 
 /// What was left on the first of every month, and how many days came to lie outside from then on: of this season, as
 /// it was run.
-pub fn left(context: &Context, run: &SeasonRun, system: System) -> Vec<String> {
-    let _ = context;
+pub fn left(run: &SeasonRun, system: System) -> Vec<String> {
     let Some(water) = run.outcome.cold.first() else { return Vec::new() };
+    let then = run.run.ended.as_ref().map_or_else(
+        || "from then on".to_owned(),
+        |ended| format!("from then to {}, when it stops,", ended.date),
+    );
     let of = |left: &crate::season::Left| {
         let usable = left.usable_m3.map_or_else(|| "nothing usable".to_owned(), |m3| volume(m3, system));
         let outside = match left.days_outside {
             0 => "no day outside a hard target".to_owned(),
             count => format!("{} outside the hard targets", days(count)),
         };
-        format!("{usable} left on {}: from then on {outside}", left.date)
+        format!("{usable} left on {}: {then} {outside}", left.date)
     };
     let mut out: Vec<String> = run.outcome.left.iter().map(of).collect();
     if !out.is_empty() {

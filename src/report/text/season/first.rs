@@ -12,7 +12,7 @@ use crate::units::System;
 use super::super::river::record::{days_of, tally};
 use super::super::river::{amounts, rules};
 use super::super::volume;
-use super::exhausted_words;
+use super::{at_place, exhausted_words, unjudged};
 
 /// Label and words of each of them.
 pub(super) fn first(context: &Context, answer: &SeasonAnswer, system: System) -> Vec<(&'static str, String)> {
@@ -50,8 +50,7 @@ pub fn exhausted(outcome: &Outcome) -> String {
     }
 }
 
-/// `in 3 of 3 cases no mix reaches it any more, first from 2026-09-12 on (warm), last from 2026-10-03 on (cool)`; `None`
-/// of a single case.
+/// `it runs out in 3 of 3 cases, first on 2026-09-12 (warm), last on 2026-10-03 (cool)`; `None` of a single case.
 pub fn out_of_reach(answer: &SeasonAnswer) -> Option<String> {
     let cases = answer.cases();
     let known = cases.iter().filter(|r| !matches!(r.outcome.exhausted, Exhausted::Unknown(_))).count();
@@ -64,9 +63,12 @@ pub fn out_of_reach(answer: &SeasonAnswer) -> Option<String> {
     let Some((first, last)) = dates.first().zip(dates.last()) else {
         return Some(format!("it runs out in none of {known} cases"));
     };
-    let of = |(date, case): &(chrono::NaiveDate, String)| format!("from {date} on ({case})");
-    let last = if dates.len() > 1 { format!(", last {}", of(last)) } else { String::new() };
-    Some(format!("in {} of {known} cases no mix reaches it any more, first {}{last}", dates.len(), of(first)))
+    let when = match dates.len() {
+        1 => format!("on {} ({})", first.0, first.1),
+        _ if first.0 == last.0 => format!("on {} in each of them", first.0),
+        _ => format!("first on {} ({}), last on {} ({})", first.0, first.1, last.0, last.1),
+    };
+    Some(format!("it runs out in {} of {known} cases, {when}", dates.len()))
 }
 
 /// When the first reserve is gone into; `None` of a site without.
@@ -94,25 +96,25 @@ pub fn targets(context: &Context, run: &SeasonRun, system: System) -> Vec<String
     let site = context.site();
     let of = |told: &TargetTally| {
         let rule = site.targets.get(told.target)?;
-        let range = told.temperature.as_ref().filter(|t| is_valid(t)).map(|t| counted(rule, t, system));
-        let floor = told
-            .oxygen
-            .as_ref()
-            .filter(|t| is_valid(t))
-            .map(|t| format!("oxygen {}", judged(t, &|by| outside_by(rule, by, true, system))));
+        let unjudged = |oxygen: bool| unjudged::why(site, &run.run.days, rule, told, oxygen);
+        let range = told.temperature.as_ref().filter(|t| is_valid(t));
+        let range = range.map(|t| counted(rule, t, &unjudged(false), system));
+        let floor = told.oxygen.as_ref().filter(|t| is_valid(t)).map(|t| {
+            let by = |by: f64| outside_by(rule, by, true, system);
+            format!("oxygen {}", judged(t, &by, &unjudged(true)))
+        });
         let words: Vec<String> = [range, floor].into_iter().flatten().collect();
-        let place = harmless(&rule.point);
         let asks = rules::asks(rule, system);
         (!words.is_empty())
-            .then(|| format!("{} at {place} ({asks}): {}", harmless(&rule.name), words.join("; ")))
+            .then(|| format!("{} ({asks}): {}", at_place(&rule.name, &rule.point), words.join("; ")))
     };
     let told: Vec<String> = run.outcome.targets.iter().filter_map(of).collect();
     if told.is_empty() { vec!["no target is valid on a day of the season".to_owned()] } else { told }
 }
 
 /// A range's tally, its degree-days with it.
-fn counted(rule: &Target, of: &Tally, system: System) -> String {
-    let mut out = judged(of, &|by| outside_by(rule, by, false, system));
+fn counted(rule: &Target, of: &Tally, unjudged: &str, system: System) -> String {
+    let mut out = judged(of, &|by| outside_by(rule, by, false, system), unjudged);
     if of.sum_outside > 0.0 && rule.is_of_temperature() && !rule.statistic.counts_days() {
         let _ = write!(out, ", {} in all", amounts::degree_days(of.sum_outside, system));
     }
@@ -124,11 +126,11 @@ fn is_valid(of: &Tally) -> bool {
     of.judged + of.unknown > 0
 }
 
-fn judged(of: &Tally, amount: &dyn Fn(f64) -> String) -> String {
+fn judged(of: &Tally, amount: &dyn Fn(f64) -> String, unjudged: &str) -> String {
     if of.judged == 0 {
-        return format!("not judged on any of {}: the hours of a day are not known", days(of.unknown));
+        return format!("not judged on any of {}: {unjudged}", days(of.unknown));
     }
-    tally(of, amount, "not judged")
+    tally(of, amount, &format!("not judged ({unjudged})"))
 }
 
 /// How far outside a rule: of its oxygen floor, or in the unit of its range.

@@ -4,9 +4,11 @@
 mod calendar;
 mod cold;
 mod first;
+pub(in crate::report) mod learned;
 pub(super) mod price;
 mod rest;
 mod side;
+mod unjudged;
 
 use chrono::NaiveDate;
 use unicode_width::UnicodeWidthStr;
@@ -19,10 +21,10 @@ use crate::tasks::season::SeasonAnswer;
 
 use super::{labelled, list, wrapped};
 
-pub use calendar::{gates, moved_words, moves, reach};
+pub use calendar::{gates, moved_words, moves, past, reach};
 pub use cold::{cold, left};
 pub use first::{exhausted, out_of_reach, outside_by, reserve, targets};
-pub use price::lines as prices;
+pub use price::{asked as priced, lines as prices};
 pub use rest::rest;
 pub use side::{HEADS, Row, columns, meaning, side};
 
@@ -30,15 +32,15 @@ pub use side::{HEADS, Row, columns, meaning, side};
 pub(super) fn body(context: &Context, answer: &SeasonAnswer) -> String {
     let system = context.system;
     let mut out = labelled("Season", &spoken_of(answer));
-    out.push_str(&labelled("", &gates_chosen(answer)));
+    out.push_str(&labelled("", &gates_chosen(context, answer)));
     for (label, words) in first::first(context, answer, system) {
         out.push_str(&labelled(label, &words));
     }
     out.push('\n');
     out.push_str(&side::table(answer, system));
-    out.push_str(&section("Cold water", cold(context, &answer.main, system)));
+    out.push_str(&section("Cold water", cold(&answer.main, system)));
     out.push_str(&section("Gates", gates(context, &answer.main, system)));
-    out.push_str(&section("Moves", moves(context, answer, &answer.main, system)));
+    out.push_str(&section("Moves", moves(context, &answer.main, system)));
     out.push_str(&section("Within reach on the days of decision", reach(&answer.main, system)));
     out.push_str(&section("Beside", rest(context, &answer.main, system)));
     // what is said of a file beside the casts may be a note of the season already
@@ -93,9 +95,11 @@ fn spoken_of(answer: &SeasonAnswer) -> String {
 }
 
 /// How the gates are chosen, from when on, and how often.
-fn gates_chosen(answer: &SeasonAnswer) -> String {
+fn gates_chosen(context: &Context, answer: &SeasonAnswer) -> String {
     let held = if answer.decides > answer.begins {
         format!("what is set now is held until {}, then ", answer.decides)
+    } else if answer.decides < context.on.date_naive() {
+        format!("nobody knows what is set now: decided from {}, the day of the cast, on: ", answer.decides)
     } else {
         String::new()
     };
@@ -128,6 +132,12 @@ pub fn exhausted_words(of: &Exhausted) -> String {
         Exhausted::NotBy(date) => format!("not by {date}"),
         Exhausted::Unknown(why) => format!("not known: {}", harmless(why)),
     }
+}
+
+/// A name with its place, where the name does not tell it.
+fn at_place(name: &str, place: &str) -> String {
+    let (name, place) = (harmless(name), harmless(place));
+    if name.ends_with(&format!(" at {place}")) { name } else { format!("{name} at {place}") }
 }
 
 /// A date in a table.

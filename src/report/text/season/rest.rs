@@ -5,7 +5,7 @@ use crate::tasks::Context;
 use crate::tasks::season::SeasonRun;
 use crate::units::{System, in_system, say};
 
-use super::exhausted_words;
+use super::{at_place, exhausted_words};
 
 /// Hours of a change where the site does not say.
 const CHANGE_HOURS: &str = "in one hour, assumed";
@@ -24,7 +24,7 @@ pub fn rest(context: &Context, run: &SeasonRun, system: System) -> Vec<String> {
             Some(format!("{} {}", harmless(stage), exhausted_words(&told.on)))
         });
         let named: Vec<String> = named.collect();
-        format!("{} at {}: {}", harmless(&stages.name), harmless(&stages.point), named.join(", "))
+        format!("{}: {}", at_place(&stages.name, &stages.point), named.join(", "))
     }));
     out.push(match outcome.least_oxygen {
         Some((least, date)) => format!("least oxygen below the dam: {least:.1} mg/L on {date}"),

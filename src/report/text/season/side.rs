@@ -1,8 +1,10 @@
 //! The seasons of an answer side by side.
 
+use std::fmt::Write as _;
+
 use crate::problem::harmless;
-use crate::season::Exhausted;
-use crate::tasks::season::{SeasonAnswer, SeasonRun};
+use crate::season::{Exhausted, TargetTally};
+use crate::tasks::season::{SeasonAnswer, SeasonRun, Seen};
 use crate::units::{Dimension, System, figure};
 
 use super::super::{fitted, wrapped};
@@ -25,6 +27,12 @@ pub struct Row {
     pub cells: [String; 5],
     /// Solved with this very case in view.
     pub foresight: bool,
+    /// What was in view when its gates were chosen.
+    pub seen: Seen,
+    /// Where it goes through fewer days than the plan of the one spoken of: `stops 09-12`, `ends 10-31`.
+    pub short: Option<String>,
+    /// Whether a hard rule is not judged on any day of it.
+    pub unjudged: bool,
     /// The one spoken of.
     pub main: bool,
 }
@@ -33,23 +41,50 @@ pub struct Row {
 pub fn side(answer: &SeasonAnswer, system: System) -> Vec<Row> {
     let row = |(i, run): (usize, &SeasonRun)| {
         let (score, outcome) = (&run.outcome.score, &run.outcome);
+        let (short, unjudged) = (days_short(answer, run), unjudged(run));
+        let mark = |is: bool, mark: &'static str| if is { mark } else { "" };
+        let marks = format!("{}{}", mark(short.is_some(), "!"), mark(unjudged, "?"));
         let unit = system.unit(Dimension::TemperatureDifference);
         Row {
             name: [&run.run.plan, &run.run.case, &run.run.strategy].map(|name| harmless(name)),
             cells: [
                 date(&outcome.exhausted),
                 outcome.under_reserve.as_ref().map_or_else(|| "-".to_owned(), date),
-                format!("{} d", score.days_outside),
+                format!("{} d{marks}", score.days_outside),
                 figure(score.worst_c, unit, 1),
                 outcome.moves.to_string(),
             ],
             foresight: run.foresight,
+            seen: answer.seen(run),
+            short,
+            unjudged,
             main: i == 0,
         }
     };
     let mut rows: Vec<Row> = answer.runs().enumerate().map(row).collect();
-    rows.sort_by_key(|row| row.foresight);
+    rows.sort_by_key(|row| row.seen);
     rows
+}
+
+/// Where a season stops, or ends with a plan before that of the one spoken of.
+fn days_short(answer: &SeasonAnswer, run: &SeasonRun) -> Option<String> {
+    let stops = run.run.ended.as_ref().map(|ended| format!("stops {}", short(ended.date)));
+    let (last, main) = (run.plan.span()?.1, answer.main.plan.span()?.1);
+    stops.or_else(|| (last < main).then(|| format!("ends {}", short(last))))
+}
+
+/// Whether a hard rule that is valid on days of the season is not judged on any of them.
+fn unjudged(run: &SeasonRun) -> bool {
+    let is_hard =
+        |told: &&TargetTally| run.skies.site.targets.get(told.target).is_some_and(|rule| !rule.soft);
+    let parts = |told: &TargetTally| [told.temperature, told.oxygen];
+    run.outcome
+        .targets
+        .iter()
+        .filter(is_hard)
+        .flat_map(parts)
+        .flatten()
+        .any(|t| t.judged == 0 && t.unknown > 0)
 }
 
 fn date(of: &Exhausted) -> String {
@@ -84,11 +119,15 @@ pub fn columns(rows: &[Row]) -> Vec<String> {
     let mut out = vec![format!("  {:<NAME$}{head}", "plan, case, strategy")];
     out.extend(rows.iter().map(|row| {
         let mark = if row.main { ">" } else { " " };
-        let seen = if row.foresight { " (seen)" } else { "" };
+        let seen = match row.seen {
+            Seen::Nothing => " ",
+            Seen::Weather => "+",
+            Seen::All => "*",
+        };
         let [plan, case, strategy] = &row.name;
-        let name = fitted(&format!("{}, {case}, {strategy}{seen}", fitted(plan, PLAN).trim_end()), NAME - 1);
+        let name = fitted(&format!("{}, {case}, {strategy}", fitted(plan, PLAN).trim_end()), NAME - 1);
         let cells = in_columns(row.cells.each_ref().map(String::as_str));
-        format!("{mark} {name:<NAME$}{cells}").trim_end().to_owned()
+        format!("{mark}{seen}{name:<NAME$}{cells}").trim_end().to_owned()
     }));
     out
 }
@@ -96,14 +135,25 @@ pub fn columns(rows: &[Row]) -> Vec<String> {
 /// What the heads and the cells mean.
 pub fn meaning(rows: &[Row], system: System) -> String {
     let unit = system.unit(Dimension::TemperatureDifference);
-    let seen = if rows.iter().any(|row| row.foresight) {
-        "; (seen): solved with that very case in view, no evidence, so unseen cases stand first"
-    } else {
-        ""
-    };
-    format!(
+    let mut out = format!(
         "outside: days outside the hard targets, summed over them; worst: farthest outside, {}; not: not by the end of the \
-         season{seen}",
+         season",
         unit.symbol()
-    )
+    );
+    if rows.iter().any(|row| row.seen == Seen::All) {
+        out.push_str("; *: solved with that very case in view, no evidence, so unseen cases stand first");
+    }
+    if rows.iter().any(|row| row.seen == Seen::Weather) {
+        out.push_str("; +: solved in that weather under another plan");
+    }
+    let short =
+        rows.iter().filter_map(|row| Some(format!("{} {}", row.name.join(", "), row.short.as_ref()?)));
+    let short: Vec<String> = short.collect();
+    if !short.is_empty() {
+        let _ = write!(out, "; !: days after its end are not counted: {}", short.join("; "));
+    }
+    if rows.iter().any(|row| row.unjudged) {
+        out.push_str("; ?: a hard rule is not judged on any day");
+    }
+    out
 }

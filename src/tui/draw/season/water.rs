@@ -42,24 +42,24 @@ fn band(edges: &[f64], shown: f64) -> usize {
     edges.iter().take_while(|edge| shown >= **edge).count()
 }
 
-/// What stands at an elevation on a day: `None` over the surface and below the bed.
-fn at(day: &WaterDay, bed_m: f64, elevation_m: f64) -> Option<Option<f64>> {
+/// The layer at an elevation on a day, its top and its value: `None` over the surface and below the bed.
+fn at(day: &WaterDay, bed_m: f64, elevation_m: f64) -> Option<(f64, Option<f64>)> {
     if elevation_m < bed_m {
         return None;
     }
-    day.layers.iter().find(|layer| elevation_m <= layer.0).map(|layer| layer.1)
+    day.layers.iter().find(|layer| elevation_m <= layer.0).copied()
 }
 
 /// The cells of the water: what is put last is drawn.
 struct Cells<'a> {
     frame: &'a Frame,
     scale: Scale,
-    cells: Vec<Option<(&'static str, Role)>>,
+    put: Vec<Option<(&'static str, Role)>>,
 }
 
 impl<'a> Cells<'a> {
     fn new(frame: &'a Frame, scale: Scale) -> Self {
-        Self { frame, scale, cells: vec![None; frame.cols * frame.water.1] }
+        Self { frame, scale, put: vec![None; frame.cols * frame.water.1] }
     }
 
     /// Row of an elevation, from the top of the water's part.
@@ -74,20 +74,20 @@ impl<'a> Cells<'a> {
     }
 
     fn put(&mut self, col: usize, row: usize, glyph: &'static str, role: Role) {
-        if let Some(cell) = self.cells.get_mut(row * self.frame.cols + col) {
+        if let Some(cell) = self.put.get_mut(row * self.frame.cols + col) {
             *cell = Some((glyph, role));
         }
     }
 
     /// A mark where no water is.
     fn over(&mut self, col: usize, row: usize, glyph: &'static str, role: Role) {
-        if self.cells.get(row * self.frame.cols + col).is_some_and(Option::is_none) {
+        if self.put.get(row * self.frame.cols + col).is_some_and(Option::is_none) {
             self.put(col, row, glyph, role);
         }
     }
 
     fn draw(&self, pen: &mut Pen) {
-        for (i, cell) in self.cells.iter().enumerate() {
+        for (i, cell) in self.put.iter().enumerate() {
             if let Some((glyph, role)) = cell {
                 let (row, col) = (i / self.frame.cols, i % self.frame.cols);
                 pen.put(self.frame.side + col, self.frame.water.0 + row, glyph, *role);
@@ -132,7 +132,8 @@ fn column(
     let unit = picture.system.unit(picture.water.dimension);
     for row in 0..cells.frame.water.1 {
         // a cell shows the water in its middle
-        let Some(value) = at(day, picture.water.elevations_m.0, cells.middle_m(row)) else { continue };
+        let layer = at(day, picture.water.elevations_m.0, cells.middle_m(row));
+        let Some((_, value)) = layer else { continue };
         let (glyph, role) = value.map_or((UNKNOWN, Role::Quiet), |v| {
             let band = band(edges, unit.from_si(v)).min(BANDS - 1);
             (marks.fill[band], Role::Band(band))
@@ -142,7 +143,9 @@ fn column(
     if let Some((surface_m, _)) = day.layers.last() {
         let row = cells.row(*surface_m);
         let row = if cells.middle_m(row) <= *surface_m { row.checked_sub(1) } else { Some(row) };
-        row.into_iter().for_each(|row| cells.over(col, row, marks.surface, Role::Plain));
+        if let Some(row) = row {
+            cells.over(col, row, marks.surface, Role::Plain);
+        }
     }
 }
 

@@ -7,7 +7,7 @@
 //! the mix chosen: what to set, what   | temperature against oxygen
 //! moves, why, what to beware of       | with the mix chosen marked
 //! ```
-//! What is rejected and the answers beyond the list take the place of everything under the first lines.
+//! What is rejected, the answers beyond the list and the prices take the place of everything under the first lines.
 
 mod head;
 mod list;
@@ -136,6 +136,7 @@ fn page(screen: &Screen, area: Rect) -> Lines {
         Page::List => said::lines(screen, width),
         Page::Rejected => pages::rejected(screen, width),
         Page::Others => pages::others(screen, width),
+        Page::Prices => pages::prices(screen, width),
     }
 }
 

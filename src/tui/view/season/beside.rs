@@ -16,14 +16,16 @@ pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
     let here = [&run.plan, &run.case, &run.strategy].map(|name| harmless(name));
     let mut rows: Vec<Row> = Vec::new();
     for ahead in screen.session.seasons_beside(screen.shown.ahead) {
+        // the newest of each stands first already; two plans of one answer may have one name
+        let known = rows.len();
         for row in side(&ahead.answer, system) {
-            // the newest of each stands first already
-            if rows.iter().all(|r| (&r.name, r.foresight) != (&row.name, row.foresight)) {
+            let is = |r: &Row| (&r.name, r.seen) == (&row.name, row.seen);
+            if !rows.iter().take(known).any(is) {
                 rows.push(row);
             }
         }
     }
-    rows.sort_by(|a, b| (a.foresight, &a.name).cmp(&(b.foresight, &b.name)));
+    rows.sort_by(|a, b| (a.seen, &a.name).cmp(&(b.seen, &b.name)));
     for row in &mut rows {
         row.main = row.name == here && row.foresight == screen.shown.run.foresight;
     }

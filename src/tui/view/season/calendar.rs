@@ -13,12 +13,12 @@ pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
     say(&mut out, "Gates and moves by date; g or Esc goes back.", width, 2, Role::Quiet);
     let parts = [
         ("Gates", gates(context, run, system)),
-        ("Moves", moves(context, &ahead.answer, run, system)),
+        ("Moves", moves(context, run, system)),
         ("Targets", targets(context, run, system)),
         ("Runs out", vec![exhausted(&run.outcome)]),
         ("Reserve", reserve(context, &run.outcome, system).into_iter().collect()),
         ("Within reach on the days of decision", reach(run, system)),
-        ("Cold water", cold(context, run, system)),
+        ("Cold water", cold(run, system)),
         ("Beside", rest(context, run, system)),
     ];
     for (heading, lines) in parts.into_iter().filter(|part| !part.1.is_empty()) {
@@ -27,9 +27,9 @@ pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
             // the blanks that make columns stay where a line has room
             let line = format!("  {line}");
             if line.chars().count() <= width {
-                out.push((line, Role::Plain))
+                out.push((line, Role::Plain));
             } else {
-                say(&mut out, &line, width, 4, Role::Plain)
+                say(&mut out, &line, width, 4, Role::Plain);
             }
         }
     }

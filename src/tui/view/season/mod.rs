@@ -20,6 +20,7 @@ use ratatui::layout::{Position, Rect};
 
 use crate::problem::harmless;
 use crate::tasks::Failure;
+use crate::tasks::season::Seen;
 use crate::tui::draw::season::{day_at, season};
 use crate::tui::look::Role;
 use crate::tui::model::{Model, SeasonPage, SeasonShown, Session};
@@ -41,25 +42,33 @@ struct Screen<'a> {
 }
 
 impl Screen<'_> {
-    /// That the season is not of what is set and chosen, and whether another is on its way.
-    fn old_words(&self) -> Option<&'static str> {
-        self.shown.old.then_some(if self.model.ahead.is_some() {
-            "FROM BEFORE; the new is being computed"
-        } else {
-            "FROM BEFORE; r computes the new"
+    /// That the season is not of what is set and chosen, and whether another is on its way, or why there is none.
+    fn old_words(&self) -> Option<String> {
+        self.shown.old.then(|| match &self.session.season_wrong {
+            _ if self.model.ahead.is_some() => "FROM BEFORE; the new is being computed".to_owned(),
+            None | Some(Failure::Stopped) => "FROM BEFORE; r computes the new".to_owned(),
+            Some(failure) => {
+                format!("FROM BEFORE; no newer season: {}", failure_words(failure, self.model.system()))
+            }
         })
+    }
+
+    /// Of a strategy that is solved on a case: whether it was this one.
+    fn seen_words(&self) -> Option<&'static str> {
+        let (shown, answer) = (self.shown.run, &self.shown.ahead.answer);
+        match answer.seen(shown) {
+            Seen::All => Some("SOLVED ON THIS CASE: foresight, no evidence"),
+            Seen::Weather => Some("solved in this weather under another plan"),
+            Seen::Nothing => (answer.main.foresight && shown.run.strategy == answer.main.run.strategy)
+                .then_some("this case was not seen"),
+        }
     }
 
     /// Plan, case and strategy of what is shown, each with its key.
     fn heading(&self) -> String {
         let (run, answer) = (&self.shown.run.run, &self.shown.ahead.answer);
-        let unseen = match (self.shown.run.foresight, run.aims.is_some() || answer.main.foresight) {
-            (true, _) => "; SOLVED ON THIS CASE: foresight",
-            (false, true) if run.strategy == answer.main.run.strategy => "; this case was not seen",
-            _ => "",
-        };
         format!(
-            "plan {} | case {} | {}, every {} d{unseen}",
+            "plan {} | case {} | {}, every {} d",
             harmless(&run.plan),
             harmless(&run.case),
             harmless(&run.strategy),

@@ -43,7 +43,7 @@ pub(super) fn picture(screen: &Screen) -> Option<SeasonPicture> {
 }
 
 impl<'a> Screen<'a> {
-    /// The site under the air of the case shown.
+    /// The site as opened, with what is changed.
     pub(super) fn site(&self) -> &'a Site {
         self.shown.ahead.context.site()
     }
@@ -90,15 +90,24 @@ impl<'a> Screen<'a> {
         self.shown.run.outcome.targets.iter().filter_map(of)
     }
 
-    /// What they ask on a date: the highest of their lows, the lowest of their highs.
+    /// What they ask on a date: the highest of their lows, the lowest of their highs; days outside are counted by it.
     pub(super) fn asked(&self, date: NaiveDate) -> [Option<f64>; 2] {
+        self.range(date, |rule| [rule.low_c, rule.high_c])
+    }
+
+    /// The same within the buffers that mixes are chosen with.
+    pub(super) fn kept(&self, date: NaiveDate) -> [Option<f64>; 2] {
+        self.range(date, |rule| [rule.low_kept_c(), rule.high_kept_c()])
+    }
+
+    fn range(&self, date: NaiveDate, ends: impl Fn(&Target) -> [Option<f64>; 2]) -> [Option<f64>; 2] {
         let year_type = self.site().year_type.as_deref();
         let rules = || self.rules().map(|r| r.0).filter(|rule| rule.valid_on(date, year_type));
         if self.session.season.oxygen {
             return [rules().filter_map(|r| r.oxygen_min_mg_l).reduce(f64::max), None];
         }
-        let rules = || rules().filter(|r| r.is_of_temperature());
-        [rules().filter_map(|r| r.low_c).reduce(f64::max), rules().filter_map(|r| r.high_c).reduce(f64::min)]
+        let rules = || rules().filter(|r| r.is_of_temperature()).map(&ends);
+        [rules().filter_map(|r| r[0]).reduce(f64::max), rules().filter_map(|r| r[1]).reduce(f64::min)]
     }
 
     /// How each of them stands on a date, as the season counts it.

@@ -4,8 +4,7 @@ use chrono::NaiveDate;
 
 use crate::mix::Setting;
 use crate::problem::harmless;
-use crate::report::text::season::outside_by;
-use crate::report::text::season::{exhausted_words, moved_words};
+use crate::report::text::season::{exhausted_words, moved_words, outside_by, past};
 use crate::report::text::{setting_words, volume};
 use crate::season::{Exhausted, GateMoves, SeasonDay};
 use crate::target::{Mark, Standing, Target};
@@ -22,7 +21,10 @@ const FULL: usize = 32;
 pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
     let mut out = Lines::new();
     if let Some(words) = screen.old_words() {
-        say(&mut out, words, width, 2, Role::Old);
+        say(&mut out, &words, width, 2, Role::Old);
+    }
+    if let Some(words) = screen.seen_words() {
+        say(&mut out, words, width, 2, Role::Warn);
     }
     let days = &screen.shown.run.run.days;
     match screen.day().and_then(|i| Some((i, days.get(i)?))) {
@@ -63,7 +65,9 @@ fn of_day(screen: &Screen, (i, day): (usize, &SeasonDay), width: usize, out: &mu
         );
         add(&format!("{}: {words}", screen.place()), Role::Tried);
     }
-    standing(screen, day).into_iter().for_each(|(words, role)| add(&words, role));
+    for (words, role) in standing(screen, day) {
+        add(&words, role);
+    }
     if let Some([low, high]) = reach(screen, day.date) {
         let (low, high) = (figure(low, system.unit(Dimension::Temperature), 1), c(high));
         add(&format!("attainable {low} to {high}"), Role::Plain);
@@ -82,6 +86,11 @@ fn of_day(screen: &Screen, (i, day): (usize, &SeasonDay), width: usize, out: &mu
     let calendar = &screen.shown.run.outcome.calendar;
     if let Some(on) = calendar.iter().rev().find(|on| on.date <= day.date) {
         add(&format!("since {}: {}", on.date.format("%m-%d"), why(on, screen)), Role::Plain);
+    }
+    // a limit of the change can be broken where no gate moves
+    let decision = screen.shown.run.run.decisions.iter().rev().find(|decision| decision.date <= day.date);
+    if let Some(words) = decision.and_then(|decision| past(site, decision, system)) {
+        add(&format!("! {words}"), Role::Warn);
     }
     if let Some(next) = calendar.iter().find(|on| on.date > day.date) {
         let book = next.book_by.map_or_else(String::new, |by| format!(", book by {}", by.format("%m-%d")));
@@ -108,12 +117,17 @@ fn standing(screen: &Screen, day: &SeasonDay) -> Vec<(String, Role)> {
     let dimension = if oxygen { Dimension::Concentration } else { Dimension::Temperature };
     let value = |v: f64| show(v, dimension, system, 1);
     let low_of = |v: f64| figure(v, system.unit(dimension), 1);
-    let asked = match screen.asked(day.date) {
+    let range = |ends: [Option<f64>; 2]| match ends {
         [None, None] => None,
-        [Some(low), None] => Some(format!("asked {} at least", value(low))),
-        [None, Some(high)] => Some(format!("asked {} at most", value(high))),
-        [Some(low), Some(high)] => Some(format!("asked {} to {}", low_of(low), value(high))),
+        [Some(low), None] => Some(format!("{} at least", value(low))),
+        [None, Some(high)] => Some(format!("{} at most", value(high))),
+        [Some(low), Some(high)] => Some(format!("{} to {}", low_of(low), value(high))),
     };
+    let (rule, kept) = (screen.asked(day.date), screen.kept(day.date));
+    // days outside are counted without the buffer, mixes are chosen with it
+    let buffered =
+        range(kept).filter(|_| kept != rule).map_or_else(String::new, |r| format!(", planned {r}"));
+    let asked = range(rule).map(|range| format!("asked {range}{buffered}"));
     let marks: Vec<(&Target, Mark)> = screen.marks(day.date).collect();
     let missed = marks.iter().filter(|(_, mark)| mark.outside()).map(|(rule, mark)| {
         let by =
@@ -124,14 +138,13 @@ fn standing(screen: &Screen, day: &SeasonDay) -> Vec<(String, Role)> {
     let missed: Vec<(String, Role)> = missed.collect();
     let unknown = marks.iter().any(|(_, mark)| mark.standing == Standing::Unknown);
     let end = match (missed.is_empty(), unknown, marks.is_empty()) {
-        (false, ..) => "",
-        (true, _, true) => "",
+        (false, ..) | (true, _, true) => "",
         (true, true, _) => ": not all known",
         (true, false, _) => ": inside",
     };
-    let words = asked.unwrap_or_else(|| match marks.is_empty() {
-        true => format!("nothing is asked at {}", screen.place()),
-        false => format!("rules at {}", screen.place()),
+    let words = asked.unwrap_or_else(|| {
+        let none = if marks.is_empty() { "nothing is asked" } else { "rules" };
+        format!("{none} at {}", screen.place())
     });
     let role = if marks.is_empty() || unknown || !missed.is_empty() { Role::Plain } else { Role::Inside };
     std::iter::once((format!("{words}{end}"), role)).chain(missed).collect()
