@@ -51,12 +51,12 @@ fn off_plan(setup: &Setup, site: &Site, run: &Run) -> Option<Stopping> {
 
 /// Days on which less than the least release of the site leaves, and on which more than the greatest does.
 fn releases(site: &Site, days: &[SeasonDay]) -> [Option<Stopping>; 2] {
-    let of = |bound: Option<f64>, kind, side, beyond: fn(f64, f64) -> bool| {
+    type Beyond = fn(f64, f64) -> bool;
+    let of = |bound: Option<f64>, kind, side, beyond: Beyond, farther: fn(f64, f64) -> f64| {
         let bound_m3s = bound?;
         let over = || days.iter().filter(|day| beyond(day.release.flow_m3s, bound_m3s));
         let first = over().next()?;
-        let farthest =
-            over().map(|day| day.release.flow_m3s).reduce(|a, b| if beyond(a, b) { a } else { b })?;
+        let farthest = over().map(|day| day.release.flow_m3s).reduce(farther)?;
         let words = format!(
             "what the plan releases in this case is {side} {kind} {} on {} of {} days, first on this one, at worst {}",
             say::m3s(bound_m3s, 1),
@@ -69,8 +69,8 @@ fn releases(site: &Site, days: &[SeasonDay]) -> [Option<Stopping>; 2] {
     let under = |flow: f64, min: f64| flow < min * (1.0 - RELEASE_SHARE);
     let above = |flow: f64, max: f64| flow > max * (1.0 + RELEASE_SHARE);
     [
-        of(site.release.min_m3s, "release.min", "below", under),
-        of(site.release.max_m3s, "release.max", "above", above),
+        of(site.release.min_m3s, "release.min", "below", under, f64::min),
+        of(site.release.max_m3s, "release.max", "above", above, f64::max),
     ]
 }
 

@@ -14,7 +14,7 @@ use std::ops::ControlFlow;
 
 /// What makes one season differ from another.
 #[derive(Debug, Clone, Copy)]
-pub struct Of {
+pub(crate) struct Of {
     /// Gates, the lowest first; on one well that opens one at a time, or each free.
     pub gates: usize,
     pub on_a_well: bool,
@@ -32,42 +32,42 @@ pub struct Of {
 }
 
 /// A season with all that it borrows.
-pub struct Tiny {
+pub(crate) struct Tiny {
     pub of: Of,
     site: Site,
     start: Profile,
     pub plan: Plan,
 }
 
-pub const SURFACE_M: f64 = 24.0;
-pub const AREA_M2: f64 = 1.0e5;
+pub(crate) const SURFACE_M: f64 = 24.0;
+pub(crate) const AREA_M2: f64 = 1.0e5;
 const LAYER_M: f64 = 2.0;
 
-pub fn begins() -> NaiveDate {
+pub(crate) fn begins() -> NaiveDate {
     NaiveDate::from_ymd_opt(2026, 7, 1).unwrap()
 }
 
 impl Tiny {
-    pub fn new(of: Of) -> Self {
+    pub(crate) fn new(of: Of) -> Self {
         Self::with(of, &[])
     }
 
     /// The same season at a dam whose file goes on with more lines.
-    pub fn with(of: Of, more: &[&str]) -> Self {
+    pub(crate) fn with(of: Of, more: &[&str]) -> Self {
         Self::edited(of, &|text| text + &more.join("\n"))
     }
 
     /// The same season at a dam whose file is changed.
-    pub fn edited(of: Of, edit: &dyn Fn(String) -> String) -> Self {
+    pub(crate) fn edited(of: Of, edit: &dyn Fn(String) -> String) -> Self {
         let site = dam(&of, edit);
         Self::at(of, site)
     }
 
     /// The same by the pool: from a pool of the day before it begins (m) so far down each day (m), to the end.
-    pub fn by_pool(mut self, pool_m: f64, fall_m: f64) -> Self {
+    pub(crate) fn by_pool(mut self, pool_m: f64, fall_m: f64) -> Self {
         let inflow_m3s = 0.8 * self.of.release_m3s;
-        for (i, day) in self.plan.days.iter_mut().enumerate() {
-            (day.pool_m, day.release_m3s) = (Some(pool_m - fall_m * (i + 1) as f64), None);
+        for (day, days) in self.plan.days.iter_mut().zip(1..) {
+            (day.pool_m, day.release_m3s) = (Some(pool_m - fall_m * f64::from(days)), None);
             day.inflow_m3s = inflow_m3s;
         }
         self
@@ -78,7 +78,7 @@ impl Tiny {
         let rows = (0..=24).map(|i| {
             let z = f64::from(i) * SURFACE_M / 24.0;
             RawRow {
-                line: i as usize + 1,
+                line: 1,
                 elevation_m: Some(z),
                 temperature_c: Some(of.cold_c + 0.01 * z + (of.warm_c - of.cold_c) * step(z)),
                 ..RawRow::default()
@@ -112,13 +112,13 @@ impl Tiny {
     }
 
     /// The same with its outlets told in the opposite order.
-    pub fn reversed(mut self) -> Self {
+    pub(crate) fn reversed(mut self) -> Self {
         self.site.outlets.reverse();
         self
     }
 
     /// The air of a case that differs by so much, C.
-    pub fn skies(&self, air_c: f64) -> Skies {
+    pub(crate) fn skies(&self, air_c: f64) -> Skies {
         let sky = Sky::Given { equilibrium_c: self.of.equilibrium_c + air_c, exchange_w_m2_c: 25.0 };
         let days: BTreeMap<NaiveDate, Sky> = self.plan.days.iter().map(|d| (d.date, sky)).collect();
         Skies {
@@ -131,7 +131,7 @@ impl Tiny {
         }
     }
 
-    pub fn setup<'a>(&'a self, skies: &'a Skies, choosing: Choosing) -> Setup<'a> {
+    pub(crate) fn setup<'a>(&'a self, skies: &'a Skies, choosing: Choosing) -> Setup<'a> {
         Setup {
             start: &self.start,
             begins: begins(),
@@ -144,11 +144,11 @@ impl Tiny {
         }
     }
 
-    pub fn run(&self, skies: &Skies, choosing: Choosing) -> Run {
+    pub(crate) fn run(&self, skies: &Skies, choosing: Choosing) -> Run {
         run(&self.setup(skies, choosing), &|_| ControlFlow::Continue(())).unwrap()
     }
 
-    pub fn by(&self, skies: &Skies, strategy: Strategy) -> Run {
+    pub(crate) fn by(&self, skies: &Skies, strategy: Strategy) -> Run {
         self.run(skies, Choosing::By(strategy))
     }
 }
