@@ -5,7 +5,7 @@ use std::collections::BTreeSet;
 use chrono::Datelike;
 
 use crate::problem::{Problem, Weight};
-use crate::season::{Choosing, Plan};
+use crate::season::Choosing;
 use crate::tasks::Context;
 use crate::units::say;
 
@@ -37,14 +37,6 @@ pub(super) fn notes(context: &Context, of: &Understood) -> Vec<Problem> {
 pub(super) fn of_plans(of: &Understood) -> Vec<Problem> {
     let mut out: Vec<Problem> = of.plan.notes.clone();
     out.extend(of.refused.iter().map(left_out));
-    let all: Vec<&Plan> = std::iter::once(&of.plan).chain(&of.other_plans).map(AsRef::as_ref).collect();
-    for (i, plan) in all.iter().enumerate() {
-        if let Some(same) = all.iter().take(i).find(|other| other.name == plan.name) {
-            let words =
-                format!("the plans {} and {} have the same name, `{}`", same.file, plan.file, plan.name);
-            out.push(Problem::flag("plan-name", words, "give one of them another `# name:`"));
-        }
-    }
     out
 }
 
