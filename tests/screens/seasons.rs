@@ -244,3 +244,16 @@ fn scenario_the_buffer_is_told_beside_what_is_asked() {
     assert!(driver.text().contains("asked 9.0 to 14.0 C, planned"), "{}", driver.text());
     assert!(driver.text().contains("9.5 to 13.5 C"), "{}", driver.text());
 }
+
+#[test]
+fn scenario_what_is_not_judged_is_not_told_as_kept() {
+    let mut driver = Driver::open(Some(&usual("season-unjudged")), WIDE);
+    driver.held = true;
+    driver.keys("5");
+    answer_with(&mut driver, |ahead| {
+        let told = &mut ahead.answer.main.outcome.targets[0];
+        let oxygen = told.oxygen.as_mut().unwrap();
+        (oxygen.unknown, oxygen.judged) = (oxygen.unknown + oxygen.judged, 0);
+    });
+    assert!(driver.text().contains("oxygen not judged"), "{}", driver.text());
+}
