@@ -204,7 +204,8 @@ fn is_csv(path: &Path) -> bool {
     path.extension().is_some_and(|e| e.eq_ignore_ascii_case("csv"))
 }
 
-/// Every problem of a site folder: the site file, each cast, the files beside them, each plan, the weather of years; and the units its user reads.
+/// Every problem of a site folder: the site file, each cast, the files beside them, each plan and gate schedule, the
+/// weather of years; and the units its user reads.
 pub fn check(named: &str) -> (Vec<Problem>, System) {
     match Folder::open(named) {
         Err(refused) => (refused.problems, refused.system),
@@ -217,6 +218,7 @@ pub fn check(named: &str) -> (Vec<Problem>, System) {
             }
             problems.extend(folder.around().problems.iter().cloned());
             problems.extend(folder.plans().iter().flat_map(|listed| listed.problems.iter().cloned()));
+            problems.extend(folder.schedules_said());
             problems.extend(folder.years().iter().flat_map(|years| years.problems.iter().cloned()));
             (problems, folder.site.units.system())
         }

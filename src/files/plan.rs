@@ -215,6 +215,12 @@ fn meta(table: &Table, raw: &mut RawPlan, problems: &mut Vec<Problem>) {
                 problems.push(Problem::refused("said-twice", words, "keep the right one").on_line(line));
             }
             "name" => raw.name = Some(value.to_owned()),
+            other if other.starts_with("out") && !other.contains(char::is_whitespace) => {
+                let short: String = other.chars().take(40).collect();
+                let words = format!("`# {short}:` is not read, and no outage comes of it");
+                let cure = "write `# outage: N2, 2026-09-01, 2026-10-15, hoist repair`, a line for each";
+                problems.push(Problem::flag("plan-line", words, cure).on_line(line));
+            }
             _ => {}
         }
     }

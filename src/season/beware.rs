@@ -74,14 +74,12 @@ fn releases(site: &Site, days: &[SeasonDay]) -> [Option<Stopping>; 2] {
     ]
 }
 
-/// Water with hardly any oxygen that comes into the release, where there was hardly any of it on the first day.
+/// Water with hardly any oxygen that comes into the release, where there was hardly any of it on the first day, or much
+/// less.
 fn deep_water(run: &Run) -> Option<Stopping> {
-    let low = |day: &&SeasonDay| day.release.oxygen_low_share > LOW_OXYGEN_SHARE;
-    let first = run.days.iter().find(low)?;
-    if run.days.first().is_none_or(|day| low(&day)) {
-        return None;
-    }
-    let began = run.days.first().map_or(0.0, |day| day.release.oxygen_low_share);
+    let began = run.days.first()?.release.oxygen_low_share;
+    let most = if began > LOW_OXYGEN_SHARE { began + LOW_OXYGEN_SHARE } else { LOW_OXYGEN_SHARE };
+    let first = run.days.iter().find(|day| day.release.oxygen_low_share > most)?;
     let words = format!(
         "{:.0} % of the release comes from water with less than 1 mg/L of oxygen, against {:.0} % on the first day: \
          hydrogen sulphide, iron and manganese can come with it and take up oxygen below the dam; they are not computed",

@@ -104,6 +104,9 @@ impl Skies {
         else {
             return Vec::new();
         };
+        if to < from {
+            return Vec::new();
+        }
         let of_year = |year: i32| {
             let of = |date: NaiveDate| {
                 let there = date.year() - from.year() + year;

@@ -72,6 +72,11 @@ fn scenario_stamps_differ_with_every_change_an_answer_can_come_from_and_no_other
     differs("a cast came");
     written(&at("profiles/A.CSV"), 60);
     differs("a cast of the same length was written at another time");
+    for below in ["plans", "schedules"] {
+        fs::create_dir(at(below)).unwrap();
+        fs::write(at(below).join("a.csv"), "date\n").unwrap();
+        differs("a plan or a gate schedule came");
+    }
     fs::write(at("site.yaml"), "name: [broken\n").unwrap();
     differs("the site file was broken");
     fs::remove_file(at("profiles/b.csv")).unwrap();
@@ -82,6 +87,10 @@ fn scenario_stamps_differ_with_every_change_an_answer_can_come_from_and_no_other
     differs("the site file went");
     fs::remove_dir_all(at("profiles")).unwrap();
     differs("all casts went");
+    for below in ["plans", "schedules"] {
+        fs::remove_dir_all(at(below)).unwrap();
+        differs("the plans or the gate schedules went");
+    }
     assert_eq!(stamps(named), []);
 }
 

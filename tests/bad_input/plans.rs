@@ -1,5 +1,8 @@
 //! Plans of the season: what is read, what is refused, with its line and what to do.
 
+use std::fs;
+
+use gatemix::files::folder::{Folder, ListedPlan, check};
 use gatemix::files::plan::plan;
 use gatemix::files::site::site;
 use gatemix::files::text::{Format, Source, read_from};
@@ -195,6 +198,116 @@ fn scenario_a_plan_by_the_release_holds_it_and_says_where_its_pool_does_not_foll
             problems.iter().find(|p| p.kind == kind).unwrap_or_else(|| panic!("{:#?}", said(&problems)));
         assert!(found.place.line == Some(3) && found.to_string().contains(words), "{found}");
     }
+}
+
+/// The one note or flag of a kind.
+fn only(text: &str, kind: &str) -> Problem {
+    let (plan, problems) = read(text);
+    assert!(plan.is_some(), "{:#?}", said(&problems));
+    let found: Vec<&Problem> = problems.iter().filter(|p| p.kind == kind).collect();
+    let [found] = found.as_slice() else { panic!("{kind}: {:#?}", said(&problems)) };
+    Problem::clone(found)
+}
+
+#[test]
+fn scenario_a_line_that_was_meant_for_an_outage_is_flagged() {
+    for (to, words) in
+        [("# outages: B,", "`# outages:` is not read"), ("# Outtage: B,", "`# outtage:` is not read")]
+    {
+        let flag = only(&SOUND.replacen("# outage: B,", to, 1), "plan-line");
+        assert_eq!((flag.weight, flag.place.line), (Weight::Flag, Some(2)));
+        assert!(flag.words.contains(words) && flag.cure.contains("# outage: N2"), "{flag}");
+    }
+    let (_, problems) = read(&SOUND.replacen("# name", "# out of the drawer: 1\n# name", 1));
+    assert!(!problems.iter().any(|p| p.weight == Weight::Flag), "{:#?}", said(&problems));
+}
+
+#[test]
+fn scenario_what_some_rows_tell_of_the_inflow_is_said_to_hold_for_the_others() {
+    let text = "date,pool_m,inflow_m3s,inflow_temperature_C,inflow_oxygen_mg_l,inflow_suspended_mg_l
+2026-08-01,15,10,18,9,
+2026-08-11,15,10,20,,4
+2026-08-21,14,12,16,8,4
+";
+    let (_, problems) = read(text);
+    let notes: Vec<&str> = problems.iter().map(|p| p.words.as_str()).collect();
+    assert_eq!(
+        notes,
+        [
+            "no dissolved solids of the inflow are given: it enters with those of the surface of the pool",
+            "oxygen of the inflow: given on 2 of 3 rows, on straight lines between them, the nearest held before and \
+             after",
+            "suspended solids of the inflow: given on 2 of 3 rows, on straight lines between them, the nearest held \
+             before and after",
+        ]
+    );
+    let neither = only(SOUND, "inflow-solids");
+    assert!(neither.words.starts_with("no dissolved or suspended solids"), "{neither}");
+}
+
+#[test]
+fn scenario_a_pool_above_full_is_flagged_once_with_the_number_of_its_rows() {
+    let dam = site(&SITE.replace("full: 20", "full: 14.5"), "site.yaml").site.unwrap();
+    let flags = |text: &str| {
+        let (plan, problems) = plan(&source(text), &dam);
+        assert!(plan.is_some(), "{:#?}", said(&problems));
+        problems.into_iter().filter(|p| p.weight == Weight::Flag).collect::<Vec<_>>()
+    };
+    let found = flags(SOUND);
+    assert_eq!((found.len(), found[0].kind, found[0].place.line), (1, "plan-above-full", Some(5)));
+    assert_eq!(
+        found[0].to_string(),
+        "plans/p.csv:5: flag: pool 15.00 m lies above full pool 14.50 m, as on 1 further rows; correct it where no \
+         surcharge is meant"
+    );
+    let one = flags(&SOUND.replace("2026-08-11,15,", "2026-08-11,14.2,"));
+    assert!(one[0].to_string().contains("full pool 14.50 m; correct"), "{}", one[0]);
+}
+
+#[test]
+fn scenario_plans_of_one_name_are_told_apart_by_their_files() {
+    let dir = tempfile::tempdir().unwrap();
+    let at = |name: &str| dir.path().join(name);
+    for below in ["plans", "schedules"] {
+        fs::create_dir(at(below)).unwrap();
+    }
+    fs::write(at("site.yaml"), SITE).unwrap();
+    for name in ["1-usual.csv", "2-low.csv", "by the pool.csv"] {
+        fs::write(at("plans").join(name), SOUND).unwrap();
+    }
+    let folder = Folder::open(dir.path().to_str().unwrap()).unwrap();
+    let names: Vec<&str> = folder.plans().iter().map(|p| p.plan.as_ref().unwrap().name.as_str()).collect();
+    assert_eq!(names, ["by the pool", "2-low", "by the pool.csv"]);
+    let flags = |listed: &ListedPlan| {
+        let flags = listed.problems.iter().filter(|p| p.weight == Weight::Flag).cloned();
+        flags.collect::<Vec<Problem>>()
+    };
+    let [first, second, _] = folder.plans() else { panic!() };
+    assert!(flags(first).is_empty());
+    let [flag] = &flags(second)[..] else { panic!("{:#?}", said(&second.problems)) };
+    assert_eq!(
+        (flag.kind, flag.place.line, flag.place.file.as_ref()),
+        ("name-twice", Some(1), Some(&second.file))
+    );
+    assert!(flag.words.starts_with("the name `by the pool` is already that of"), "{flag}");
+    assert!(flag.words.ends_with("1-usual.csv, so this plan is called `2-low`"), "{flag}");
+    assert!(second.plan.as_ref().unwrap().notes.contains(flag), "told with the season too");
+    let elsewhere = tempfile::tempdir().unwrap();
+    let path = elsewhere.path().join("third.csv");
+    fs::write(&path, SOUND).unwrap();
+    let third = folder.plan(path.to_str().unwrap()).unwrap();
+    assert_eq!(third.plan.unwrap().name, "third");
+
+    // a schedule that fits one of the plans has nothing said of it
+    fs::write(at("schedules/fits.csv"), "date,A\n2026-08-10,10\n2027-01-01,12\n").unwrap();
+    assert!(folder.schedules_said().is_empty(), "{:#?}", said(&folder.schedules_said()));
+    fs::write(at("schedules/early.csv"), "date,A\n2025-08-10,10\n").unwrap();
+    fs::write(at("schedules/wrong.csv"), "date,A\n2026-08-10,ten\n").unwrap();
+    let of = |problems: &[Problem]| problems.iter().map(|p| (p.kind, p.weight)).collect::<Vec<_>>();
+    let said = of(&folder.schedules_said());
+    assert_eq!(said, [("schedule-days", Weight::Flag), ("set", Weight::Refused)]);
+    let checked = of(&check(dir.path().to_str().unwrap()).0);
+    assert!(said.iter().all(|one| checked.contains(one)), "told by check: {checked:?}");
 }
 
 #[test]

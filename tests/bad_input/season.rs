@@ -159,3 +159,47 @@ fn scenario_the_months_of_the_river_stand_for_those_of_the_season() {
     let refused: Vec<_> = read.problems.iter().filter(|p| p.weight == Weight::Refused).collect();
     assert_eq!(refused.len(), 1, "{:#?}", said(&read.problems));
 }
+
+/// Flagged, and answered all the same.
+pub(super) const FLAGGED: &[Case] = &[
+    ("share: 15", "share: 0.2", "share-small", "season.wind_share", "where 0.2 of one is meant write 20 %"),
+    (
+        "takes_in: 30",
+        "takes_in: 0.3",
+        "share-small",
+        "season.inflow_takes_in",
+        "0.3 % is hardly any; it is read in",
+    ),
+    (
+        "wind: 110%",
+        "wind: 1.1",
+        "share-small",
+        "season.cases[0].wind",
+        "where 1.1 of one is meant write 110 %",
+    ),
+    (
+        "inflow: 80%",
+        "inflow: 0.8",
+        "share-small",
+        "season.cases[0].inflow",
+        "where 0.8 of one is meant write 80 %",
+    ),
+];
+
+#[test]
+fn scenario_a_share_that_reads_like_a_part_of_one_is_flagged_in_percent() {
+    for (from, to, kind, path, words) in FLAGGED {
+        let read = site(&DAM.replacen(from, to, 1), "site.yaml");
+        let [found] = &read.problems[..] else { panic!("{to}: {:#?}", said(&read.problems)) };
+        assert_eq!(
+            (found.weight, found.kind, found.place.path.as_deref()),
+            (Weight::Flag, *kind, Some(*path))
+        );
+        assert!(found.to_string().contains(words), "{found}");
+        assert!(found.place.line.is_some() && read.site.is_some(), "{found}");
+    }
+    for to in ["share: 0", "share: 1", "share: 5"] {
+        let read = site(&DAM.replacen("share: 15", to, 1), "site.yaml");
+        assert!(read.problems.is_empty(), "{to}: {:#?}", said(&read.problems));
+    }
+}

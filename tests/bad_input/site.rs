@@ -278,6 +278,7 @@ fn law_every_kind_of_problem_a_site_can_have_has_a_case() {
     let flagged = FLAGGED.iter().chain(aeration::FLAGGED).chain(river::FLAGGED).chain(river::FLAGGED_MONTHLY);
     let cases: BTreeSet<&str> = all()
         .chain(season::REFUSED)
+        .chain(season::FLAGGED)
         .chain(river::REFUSED)
         .chain(river::REFUSED_MONTHLY)
         .chain(flagged)

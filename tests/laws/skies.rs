@@ -72,7 +72,11 @@ fn law_without_a_shift_the_air_is_that_of_the_file_then_of_the_months() {
         );
     }
     assert!(matches!(skies.site.river.as_ref().unwrap().surface, Some(Surface::File(_))));
-    assert_eq!(skies.from, "the weather file to 2026-08-05, then the figures of the months");
+    let words = "the weather file on 4 of 91 days, on the others the figures of the months";
+    assert_eq!(skies.from, words);
+    // a season that ends before it begins has no air, and stops nothing
+    let over = Skies::of_case(&dam, &conditions, &case(0.0, 1.0), day("2026-08-02"), day("2026-07-31"));
+    assert!(over.unwrap_err().contains("ends on 2026-07-31"));
 }
 
 #[test]
@@ -109,6 +113,21 @@ fn law_a_day_without_air_is_named() {
     let skies =
         Skies::of_case(&dam(GIVEN), &conditions, &case(0.0, 1.0), day("2026-08-02"), day("2026-08-09"));
     assert!(skies.unwrap().days.values().all(|sky| matches!(sky, Sky::Given { .. })));
+}
+
+#[test]
+fn law_a_gap_in_the_weather_is_told_and_a_season_of_no_day_has_no_year() {
+    let (from, to) = (day("2026-08-02"), day("2026-08-09"));
+    let told = |gone| {
+        let conditions =
+            Conditions { weather: record("2026-08-01", "2026-08-09", gone), ..Conditions::default() };
+        Skies::of_case(&dam(MONTHS), &conditions, &case(0.0, 1.0), from, to).unwrap().from
+    };
+    assert_eq!(told(""), "the weather file");
+    let gap = "the weather file on 7 of 8 days, on the others the figures of the months";
+    assert_eq!(told("2026-08-04"), gap);
+    let weather = record("2026-08-01", "2026-08-09", "");
+    assert!(Skies::of_years(&dam(MONTHS), &Conditions::default(), &weather, to, from).is_empty());
 }
 
 #[test]

@@ -318,6 +318,19 @@ fn scenario_degree_days_reach_their_stages() {
 }
 
 #[test]
+fn scenario_deep_water_drawn_from_the_start_is_told_where_it_grows() {
+    let site = checked(SITE);
+    let mut season = days(3);
+    for (day, share) in season.iter_mut().zip([0.2, 0.24, 0.26]) {
+        day.release.oxygen_low_share = share;
+    }
+    let out = of(&site, season, Vec::new(), Vec::new());
+    let [told] = &out.warnings[..] else { panic!("{:?}", out.warnings) };
+    assert_eq!((told.kind, told.date), ("deep-water", date("2026-08-03")));
+    assert!(told.words.starts_with("26 % of the release") && told.words.contains("20 % on the first day"));
+}
+
+#[test]
 fn scenario_what_to_beware_of() {
     let site = checked(SITE);
     let mut season = days(5);

@@ -7,7 +7,7 @@ use std::time::SystemTime;
 use crate::files::text::YAML_CAP;
 
 use super::around::{TAILWATER, stays_within};
-use super::plans::PLANS;
+use super::plans::{PLANS, SCHEDULES};
 use super::{PROFILES, SITE_FILE, csv_paths, demonstrations, is_csv, places};
 
 /// A site among others.
@@ -40,8 +40,8 @@ pub fn sites_in(path: &Path) -> Vec<Found> {
 pub type Stamps = Vec<(PathBuf, SystemTime, u64)>;
 
 /// When each file that an answer on a site can come from was last written, and its length in bytes: the site file,
-/// sound or not, every cast and every plan of the folder, the tailwater record, and what else the site file names. Two lists differ where a file changed, came or went. Empty for a
-/// demonstration held in memory.
+/// sound or not, every cast, plan and gate schedule of the folder, the tailwater record, and what else the site file
+/// names. Two lists differ where a file changed, came or went. Empty for a demonstration held in memory.
 pub fn stamps(named: &str) -> Stamps {
     let path = Path::new(named);
     if !path.exists() && demonstrations().contains(&named) {
@@ -53,6 +53,7 @@ pub fn stamps(named: &str) -> Stamps {
         .into_iter()
         .chain(csv_paths(&root, PROFILES))
         .chain(csv_paths(&root, PLANS))
+        .chain(csv_paths(&root, SCHEDULES))
         .chain(named)
         .filter_map(|path| {
             let about = fs::metadata(&path).ok()?;

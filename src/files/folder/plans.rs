@@ -3,6 +3,8 @@
 use std::path::Path;
 use std::sync::Arc;
 
+use chrono::NaiveDate;
+
 use crate::files::plan::plan;
 use crate::files::schedule::schedule;
 use crate::files::text::{self, Format, Source};
@@ -16,7 +18,7 @@ use super::{Folder, base};
 /// Where the plans of a site are.
 pub(super) const PLANS: &str = "plans";
 /// Where its gate schedules are.
-const SCHEDULES: &str = "schedules";
+pub(super) const SCHEDULES: &str = "schedules";
 
 /// One plan of the folder: its file, the plan if it can be used, and everything said of it.
 #[derive(Debug, Clone)]
@@ -64,6 +66,30 @@ impl ListedPlan {
         }
     }
 
+    /// The same plan under a name that none of the others has: where its own is taken its file stands for it, flagged.
+    fn apart(mut self, others: &[Self]) -> Self {
+        let of = |name: &str| {
+            others.iter().find(|other| other.plan.as_ref().is_some_and(|plan| plan.name == name))
+        };
+        let Some(plan) = self.plan.as_mut().map(Arc::make_mut) else { return self };
+        let Some(other) = of(&plan.name) else { return self };
+        let base = base(&self.file);
+        let stem = base.rsplit_once('.').map_or(base, |(stem, _)| stem);
+        let free = [stem, base].into_iter().find(|name| of(name).is_none());
+        let name = free.unwrap_or(&self.file).to_owned();
+        let words = format!(
+            "the name `{}` is already that of {}, so this plan is called `{name}`",
+            plan.name, other.file
+        );
+        let cure = "give each plan a `# name` of its own";
+        let mut flag = Problem::flag("name-twice", words, cure).in_file(&self.file);
+        flag.place.line = self.source.as_ref().and_then(|source| name_line(&source.text));
+        plan.name = name;
+        plan.notes.push(flag.clone());
+        self.problems.push(flag);
+        self
+    }
+
     /// Whether it goes by a name: its file with or without its ending, or the name it gives itself.
     fn is_named(&self, name: &str) -> bool {
         let base = base(&self.file);
@@ -77,8 +103,12 @@ impl Folder {
     /// Every plan of the folder, ordered by file name; they are read once, as the casts are.
     pub fn plans(&self) -> &[ListedPlan] {
         self.plans.get_or_init(|| {
-            let sources = self.csv_sources(PLANS, |_| true);
-            sources.into_iter().map(|(file, source)| ListedPlan::of(self, file, source)).collect()
+            let mut plans: Vec<ListedPlan> = Vec::new();
+            for (file, source) in self.csv_sources(PLANS, |_| true) {
+                let listed = ListedPlan::of(self, file, source).apart(&plans);
+                plans.push(listed);
+            }
+            plans
         })
     }
 
@@ -92,7 +122,7 @@ impl Folder {
         }
         if Path::new(named).is_file() {
             let source = text::read(Path::new(named), Format::Csv);
-            return Ok(ListedPlan::of(self, named.to_owned(), source));
+            return Ok(ListedPlan::of(self, named.to_owned(), source).apart(self.plans()));
         }
         let known: Vec<String> = self.plans().iter().map(|listed| base(&listed.file).to_owned()).collect();
         Err(unknown("plan", named, PLANS, &known))
@@ -127,6 +157,28 @@ impl Folder {
         ReadSchedule { schedule: schedule.map(Arc::new), problems, source }
     }
 
+    /// What is to be said of every gate schedule of the folder, also where its changes lie on the days of none of its
+    /// plans.
+    pub fn schedules_said(&self) -> Vec<Problem> {
+        let spans: Vec<(NaiveDate, NaiveDate)> =
+            self.plans().iter().filter_map(|listed| listed.plan.as_ref()?.span()).collect();
+        let planned = |date: NaiveDate| spans.iter().any(|(from, to)| (*from..=*to).contains(&date));
+        let said = |(file, source): (String, Result<Source, Problem>)| match source {
+            Err(problem) => vec![problem],
+            Ok(source) => {
+                let ReadSchedule { schedule, mut problems, .. } = self.read_schedule(source);
+                let apart = |s: &Arc<Schedule>| !s.changes.iter().any(|(date, _)| planned(*date));
+                if !spans.is_empty() && schedule.as_ref().is_some_and(apart) {
+                    let words = "no change of the schedule lies on the days of a plan";
+                    let cure = "correct its dates, or add the plan of its days";
+                    problems.push(Problem::flag("schedule-days", words, cure).in_file(&file));
+                }
+                problems
+            }
+        };
+        self.csv_sources(SCHEDULES, |_| true).into_iter().flat_map(said).collect()
+    }
+
     /// The weather of several years that the site file names; `None` where it names none. It is read once.
     pub fn years(&self) -> Option<&Years> {
         let name = self.site.season.years.as_deref()?;
@@ -146,6 +198,15 @@ impl Folder {
             }
         }))
     }
+}
+
+/// The line of a plan that tells its name.
+fn name_line(text: &str) -> Option<usize> {
+    let meta = |line: &str| {
+        let (key, value) = line.trim_start().strip_prefix('#')?.split_once(':')?;
+        Some(key.trim().eq_ignore_ascii_case("name") && !value.trim().is_empty())
+    };
+    text.lines().position(|line| meta(line) == Some(true)).map(|before| before + 1)
 }
 
 fn unknown(what: &str, named: &str, folder: &str, known: &[String]) -> Problem {

@@ -52,16 +52,58 @@ pub(super) fn rows(raw: &RawPlan, site: &Site, problems: &mut Vec<Problem>) {
         let words = format!("the plan goes from {first} to {last}, and {MOST_DAYS} days are the most");
         problems.push(Problem::refused("plan-long", words, "make several plans of it"));
     }
-    if raw.rows.iter().all(|row| row.inflow_mg_l.is_none()) {
-        problems.push(Problem::note(
-            "inflow-oxygen",
-            "no oxygen of the inflow is given: it enters at saturation",
-        ));
+    above_full(raw, site, problems);
+    held(raw, problems);
+}
+
+/// Flags the first row on which the pool stands above full, with how many do.
+fn above_full(raw: &RawPlan, site: &Site, problems: &mut Vec<Problem>) {
+    let pool = &site.pool;
+    let above = |row: &&RawPlanRow| row.pool_m.is_some_and(|m| m > pool.full_m && m <= pool.top_m());
+    let mut rows = raw.rows.iter().filter(above);
+    let Some((first, pool_m)) = rows.next().and_then(|row| Some((row, row.pool_m?))) else { return };
+    let words = match rows.count() {
+        0 => format!("pool {} lies above full pool {}", say::m(pool_m, 2), say::m(pool.full_m, 2)),
+        more => format!(
+            "pool {} lies above full pool {}, as on {more} further rows",
+            say::m(pool_m, 2),
+            say::m(pool.full_m, 2)
+        ),
+    };
+    let cure = "correct it where no surcharge is meant";
+    problems.push(Problem::flag("plan-above-full", words, cure).on_line(first.line));
+}
+
+/// Notes what the inflow is taken to bring where no row tells it, or only some do.
+fn held(raw: &RawPlan, problems: &mut Vec<Problem>) {
+    let told = |of: fn(&RawPlanRow) -> Option<f64>| raw.rows.iter().filter(|row| of(row).is_some()).count();
+    let oxygen = told(|row| row.inflow_mg_l);
+    let solids = told(|row| row.inflow_solids_mg_l);
+    let suspended = told(|row| row.inflow_suspended_mg_l);
+    if oxygen == 0 {
+        let words = "no oxygen of the inflow is given: it enters at saturation";
+        problems.push(Problem::note("inflow-oxygen", words));
     }
-    if raw.rows.iter().all(|row| row.inflow_solids_mg_l.is_none()) {
+    let lacking = match (solids, suspended) {
+        (0, 0) => "dissolved or suspended solids",
+        (0, _) => "dissolved solids",
+        (_, 0) => "suspended solids",
+        _ => "",
+    };
+    if !lacking.is_empty() {
         let words =
-            "no dissolved solids of the inflow are given: it enters with those of the surface of the pool";
+            format!("no {lacking} of the inflow are given: it enters with those of the surface of the pool");
         problems.push(Problem::note("inflow-solids", words));
+    }
+    let all = raw.rows.len();
+    for (rows, what) in [(oxygen, "oxygen"), (solids, "dissolved solids"), (suspended, "suspended solids")] {
+        if (1..all).contains(&rows) {
+            let words = format!(
+                "{what} of the inflow: given on {rows} of {all} rows, on straight lines between them, the nearest \
+                 held before and after"
+            );
+            problems.push(Problem::note("inflow-some", words));
+        }
     }
 }
 

@@ -33,6 +33,11 @@ const BED_DEMAND: RangeInclusive<f64> = 0.0..=20.0;
 const TRANSFER_M_DAY: RangeInclusive<f64> = 0.0..=20.0;
 /// Surface water taken in, as a share of the inflow (choice).
 const TAKES_IN: RangeInclusive<f64> = 0.0..=5.0;
+/// Least share above none that is believed to be meant in percent (choice): 0.2 stands for 20 % more often than for
+/// 0.2 %.
+const LEAST_SHARE: f64 = 0.01;
+/// Likewise of a case: 1.1 stands for 110 % more often than for 1.1 % (choice).
+const LEAST_FACTOR: f64 = 0.1;
 /// Shift of a case, C (choice: either way).
 const MOST_SHIFT_C: f64 = 15.0;
 /// Factor of a case on wind and inflow (choice).
@@ -73,7 +78,22 @@ pub(super) fn season(raw: &Raw, problems: &mut Vec<Problem>) -> SeasonInputs {
     }
 }
 
+/// Flags a share that reads like a part of one rather than like percent.
+fn in_percent(share: Option<f64>, least: f64, path: &str, problems: &mut Vec<Problem>) {
+    if let Some(share) = share.filter(|share| *share > 0.0 && *share < least) {
+        // without the round-off of the way from percent
+        let told = |percent: f64| (1e4 * percent).round() / 1e4;
+        let words = format!("{} % is hardly any", told(100.0 * share));
+        let (of_one, meant) = (told(100.0 * share), told(1e4 * share));
+        let cure = format!("it is read in percent: where {of_one} of one is meant write {meant} %");
+        problems.push(Problem::flag("share-small", words, cure).at(path));
+    }
+}
+
 fn ranges(r: &RawSeason, problems: &mut Vec<Problem>) {
+    for (share, key) in [(r.wind, "wind_share"), (r.inflow_takes_in, "inflow_takes_in")] {
+        in_percent(share, LEAST_SHARE, &format!("season.{key}"), problems);
+    }
     let mut refuse = |key: &str, words: String, cure: &str| {
         problems.push(Problem::refused("season", words, cure).at(format!("season.{key}")));
     };
@@ -160,6 +180,7 @@ fn cases(cases: &[RawCase], problems: &mut Vec<Problem>) -> Vec<Case> {
             }
         }
         for (value, key) in [(c.wind, "wind"), (c.inflow, "inflow")] {
+            in_percent(value, LEAST_FACTOR, &at(key), problems);
             if value.is_some_and(|v| !FACTOR.contains(&v)) {
                 let words = format!("{key} lies outside 0 to {:.0} %", 100.0 * FACTOR.end());
                 problems.push(

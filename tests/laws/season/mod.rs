@@ -1,6 +1,7 @@
 //! Laws of the pool through a season: what is conserved, what does not change, what is never so.
 
 mod balance;
+mod brim;
 mod drawdown;
 mod learn;
 mod still;
