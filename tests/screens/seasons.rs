@@ -224,7 +224,7 @@ fn scenario_a_limit_of_the_change_that_no_mix_keeps_is_told_with_the_date() {
     let check = Check { rule: Rule::MaxMoves, of: Of::Whole, item: 0, found: 3.0, bound: 1.0, room: -2.0 };
     answer_with(&mut driver, |ahead| {
         let decisions = &mut ahead.answer.main.run.decisions;
-        decisions.iter_mut().for_each(|decision| decision.past.clear());
+        // the invented decisions break nothing
         decisions[1].past = vec![check];
     });
     assert!(!driver.text().contains("NO MIX KEEPS"), "{}", driver.text());
