@@ -33,7 +33,7 @@ pub(crate) fn answer(driver: &mut Driver) {
 
 /// The same, a season changed before it is told.
 pub(crate) fn answer_with(driver: &mut Driver, change: impl FnOnce(&mut Ahead)) {
-    let (generation, work) = driver.question(Lane::Ahead).expect("a season is asked for");
+    let (generation, work) = driver.question(Lane::Ahead).unwrap();
     let done = match work {
         Work::Season(question) => {
             let mut ahead = invented(question);

@@ -135,7 +135,7 @@ pub fn exhausted_words(of: &Exhausted) -> String {
 }
 
 /// A name with its place, where the name does not tell it.
-fn at_place(name: &str, place: &str) -> String {
+pub fn at_place(name: &str, place: &str) -> String {
     let (name, place) = (harmless(name), harmless(place));
     if name.ends_with(&format!(" at {place}")) { name } else { format!("{name} at {place}") }
 }

@@ -4,10 +4,10 @@ use chrono::NaiveDate;
 
 use crate::mix::Setting;
 use crate::problem::harmless;
-use crate::report::text::season::{exhausted_words, moved_words, outside_by, past};
+use crate::report::text::season::{at_place, exhausted_words, moved_words, outside_by, past};
 use crate::report::text::{setting_words, volume};
 use crate::season::{Exhausted, GateMoves, SeasonDay};
-use crate::target::{Mark, Standing, Target};
+use crate::target::{Mark, Standing, Tally, Target};
 use crate::tui::look::Role;
 use crate::units::{Dimension, System, figure, in_system, show};
 
@@ -180,16 +180,33 @@ fn of_season(screen: &Screen, width: usize, out: &mut Lines) {
     add(&words, if outside > 0 { Role::Outside } else { Role::Plain });
     for told in &outcome.targets {
         let Some(rule) = context.site().targets.get(told.target) else { continue };
+        let valid = |of: &&Tally| of.judged + of.unknown > 0;
+        if [&told.temperature, &told.oxygen].into_iter().flatten().find(valid).is_none() {
+            continue;
+        }
         let days = plural(u64::from(told.days_outside()), "day");
         let wish = if rule.soft { ", a wish" } else { "" };
-        let words = format!("- {} at {}{wish}: {days}", harmless(&rule.name), harmless(&rule.point));
-        add(&words, if told.days_outside() > 0 && !rule.soft { Role::Outside } else { Role::Plain });
+        let open = [("temperature", &told.temperature), ("oxygen", &told.oxygen)];
+        let open = open.into_iter().filter(|(_, of)| of.as_ref().is_some_and(is_unjudged));
+        let open: Vec<String> = open.map(|(name, _)| format!(", {name} not judged")).collect();
+        let words = format!("- {}{wish}: {days}{}", at_place(&rule.name, &rule.point), open.concat());
+        let role = match told.days_outside() {
+            1.. if !rule.soft => Role::Outside,
+            _ if !open.is_empty() => Role::Warn,
+            _ => Role::Plain,
+        };
+        add(&words, role);
     }
     add(&format!("{} gates moved, {:.0} crew hours", outcome.moves, outcome.crew_hours), Role::Plain);
     for warning in &outcome.warnings {
         let words = harmless(&in_system(&warning.words, system));
         add(&format!("! {}: {words}", warning.date.format("%m-%d")), Role::Warn);
     }
+}
+
+/// Whether no day on which a rule is valid is held against it.
+fn is_unjudged(of: &Tally) -> bool {
+    of.judged == 0 && of.unknown > 0
 }
 
 /// `1 day`, `3 days`.
