@@ -232,8 +232,8 @@ fn scenario_it_runs_out_on_the_first_day_no_mix_comes_down_to_the_high() {
 fn scenario_gates_are_lost_by_a_falling_pool_and_come_with_a_rising_one() {
     let site = checked(SITE);
     let mut season = days(6);
-    // the high gate wants 3 m over its top at 46 m
-    for (day, pool_m) in season.iter_mut().zip([50.0, 49.0, 48.9, 48.0, 49.5, 50.0]) {
+    // the high gate wants 3 m over its top at 46 m; a day goes by the pool of its morning, 55.5 m on the first
+    for (day, pool_m) in season.iter_mut().zip([49.0, 48.9, 48.0, 49.5, 50.0, 50.0]) {
         day.pool_m = pool_m;
         day.layers = layers(10.0, pool_m);
     }
@@ -245,6 +245,7 @@ fn scenario_gates_are_lost_by_a_falling_pool_and_come_with_a_rising_one() {
     assert_eq!(of_high[0].reason.as_ref().unwrap().0, "min_submergence");
     assert_eq!(of_high[0].book_by, Some(date("2026-07-23")), "open on its last day: ten days before");
     assert_eq!((of_high[1].first_day, of_high[1].last_day), (Some(date("2026-08-05")), None));
+    assert_eq!(of_high[1].reason.as_ref().unwrap().0, "min_submergence", "why not before");
     assert_eq!(out.gates.iter().filter(|g| g.outlet == 1).count(), 1);
     // one that is out all season has no day, and says why
     let outage = Outage { outlet: 2, from: begin(), to: None, reason: "hoist".into() };
