@@ -50,14 +50,17 @@ pub(super) fn meets(setup: &Setup) -> Option<(NaiveDate, f64)> {
     Some((day.date, day.pool_m?))
 }
 
-/// How far the cast's pool lies above the plan of its day, m, and until when the two are brought together; `None` where
-/// the plan does not go by the pool or has not begun.
+/// How far the cast's pool lies above the plan of its day, m, below as less than zero, and until when the two are brought
+/// together; `None` where the plan does not go by the pool or has not begun.
 pub(super) fn off_plan(setup: &Setup, pool_m: f64) -> Option<(f64, NaiveDate)> {
-    // pools are those of the ends of days: in the morning it is that of the day before
-    let evening = setup.begins.pred_opt()?;
-    let planned = |date| setup.plan.days.iter().find(|day| day.date == date)?.pool_m;
-    let planned_m = planned(evening).or_else(|| planned(setup.begins))?;
-    Some((pool_m - planned_m, meets(setup)?.0))
+    let planned = |date: NaiveDate| setup.plan.days.iter().find(|day| day.date == date)?.pool_m;
+    let evening_m = planned(setup.begins)?;
+    // a cast of the day lies between the evening before and its own; as a plan begins, it has come as it goes on
+    let before = || planned(setup.begins.pred_opt()?);
+    let after = || Some(2.0 * evening_m - planned(setup.begins.succ_opt()?)?);
+    let morning_m = before().or_else(after).unwrap_or(evening_m);
+    let nearest_m = pool_m.clamp(evening_m.min(morning_m), evening_m.max(morning_m));
+    Some((pool_m - nearest_m, meets(setup)?.0))
 }
 
 fn shifted(day: PlanDay, case: &Case) -> PlanDay {

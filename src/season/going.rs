@@ -121,7 +121,7 @@ impl<'a> Going<'a> {
     }
 
     /// Goes through days that have passed: by the schedule, else by what is set now, whatever limit stood against it.
-    pub(super) fn as_it_was(mut self, progress: Progress) -> Option<Run> {
+    pub(super) fn through_what_was(mut self, progress: Progress) -> Option<Run> {
         while self.is_on() {
             if progress(self.share_done()).is_break() {
                 return None;

@@ -127,7 +127,7 @@ pub fn run(setup: &Setup, progress: Progress) -> Option<Run> {
 /// Goes through days that have passed: gates as the schedule of the setup tells, else as they stand now, whatever limit
 /// stood against it. Stopped as [`run`] is.
 pub fn passed(setup: &Setup, progress: Progress) -> Option<Run> {
-    Going::new(setup)?.as_it_was(progress)
+    Going::new(setup)?.through_what_was(progress)
 }
 
 impl Run {

@@ -102,8 +102,8 @@ mod tests {
         let mut better = 0;
         for seed in 0..100_u32 {
             let count = 1 + (seed as usize % 31);
-            let want = |i: usize| 1.0 + f64::from((seed * 7919 + 104_729 * i as u32) % 97) / 50.0;
-            let wants: Vec<f64> = (0..count).map(want).collect();
+            let want = |i: u32| 1.0 + f64::from((seed * 7919 + 104_729 * i) % 97) / 50.0;
+            let wants: Vec<f64> = (0..).take(count).map(want).collect();
             let store = 0.6 * wants.iter().sum::<f64>();
             let play = game(&wants, store);
             let runs = AtomicUsize::new(0);

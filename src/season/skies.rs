@@ -152,10 +152,10 @@ impl Skies {
         exchange_w_m2_c: &Yearly,
     ) -> Self {
         let mut site = site.clone();
-        let equilibrium_c = Yearly::Monthly(std::array::from_fn(|i| {
-            // no ice is computed
-            (equilibrium_c.in_month(i as u32 + 1) + case.air_c).max(0.0)
-        }));
+        // no ice is computed
+        let months: [u32; 12] = [1, 2, 3, 4, 5, 6, 7, 8, 9, 10, 11, 12];
+        let equilibrium_c =
+            Yearly::Monthly(months.map(|month| (equilibrium_c.in_month(month) + case.air_c).max(0.0)));
         let sky = |date: NaiveDate| Sky::Given {
             equilibrium_c: equilibrium_c.in_month(date.month()),
             exchange_w_m2_c: exchange_w_m2_c.in_month(date.month()),

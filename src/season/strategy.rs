@@ -44,12 +44,11 @@ pub(super) fn is_due(setup: &Setup, decides: NaiveDate, date: NaiveDate) -> bool
 pub(super) fn wants(setup: &Setup, decides: NaiveDate, site: &Site, date: NaiveDate, why: Why) -> Wants {
     let is_forced = matches!(why, Why::Forced(_));
     match &setup.choosing {
-        Choosing::By(Strategy::Best | Strategy::Thrift) => Wants::Best(0.0),
+        Choosing::Held(asked, until) if date < *until && !is_forced => Wants::These(asked.clone()),
+        Choosing::By(Strategy::Best | Strategy::Thrift) | Choosing::Held(..) => Wants::Best(0.0),
         Choosing::Aims(aims) => Wants::Best(aim_on(aims, decides, setup.decide_days, date)),
         Choosing::By(Strategy::Hold) if is_forced => Wants::Best(0.0),
         Choosing::By(Strategy::Hold) => Wants::Stay,
-        Choosing::Held(asked, until) if date < *until && !is_forced => Wants::These(asked.clone()),
-        Choosing::Held(..) => Wants::Best(0.0),
         Choosing::Schedule(of) | Choosing::Found(of) => scheduled(of, site, date, why),
     }
 }

@@ -16,7 +16,8 @@ fn cast_on(days: &[&str]) -> Folder {
         days.iter().map(|day| (format!("{day}.csv"), with(CAST, "2025-07-14", day))).collect();
     let bytes: Vec<(&str, &[u8])> =
         casts.iter().map(|(name, text)| (name.as_str(), text.as_bytes())).collect();
-    Folder::new(SITE, &bytes)
+    let air = "season: { monthly: { air: 20, humidity: 60, wind: 2.5, cloud: 40 } }\n";
+    Folder::new(&format!("{SITE}{air}"), &bytes)
 }
 
 fn put(folder: &Path, below: &str, name: &str, text: &str) {

@@ -205,6 +205,11 @@ fn scenario_a_reserve_counts_from_its_day_on() {
     let kept = of(&site, days(6), Vec::new(), Vec::new());
     assert_eq!(kept.under_reserve, Some(Exhausted::NotBy(date("2026-08-06"))));
     assert_eq!(of(&checked(SITE), days(2), Vec::new(), Vec::new()).under_reserve, None);
+    // it goes on counting across the new year
+    let mut long = days(160);
+    long[157].layers = layers(8.0, 55.0);
+    let out = of(&site, long, Vec::new(), Vec::new());
+    assert_eq!(out.under_reserve, Some(Exhausted::On(date("2027-01-05"))));
 }
 
 #[test]
@@ -214,14 +219,16 @@ fn scenario_it_runs_out_on_the_first_day_no_mix_comes_down_to_the_high() {
         let told = coldest.iter().enumerate();
         let decisions = told.map(|(i, c)| decision(7 * i as u64, Some([*c, 20.0]))).collect();
         let out = of(&site, days(30), decisions, Vec::new());
-        (out.exhausted, out.exhausted_until)
+        (out.exhausted, out.exhausted_last, out.exhausted_until)
     };
-    let from = |from: &str, until: Option<&str>| (Exhausted::On(date(from)), until.map(date));
+    let from = |from: &str, last: &str, until: Option<&str>| {
+        (Exhausted::On(date(from)), Some(date(last)), until.map(date))
+    };
     // 1, 8 and 15 August are the summer rule's (high 12), 22 and 29 the autumn rule's (high 10)
-    assert_eq!(on([12.0, 8.0, 8.0, 10.0, 8.0]), (Exhausted::NotBy(date("2026-08-30")), None));
-    assert_eq!(on([8.0, 8.0, 8.0, 10.0, 10.5]), from("2026-08-29", None));
-    assert_eq!(on([8.0, 8.0, 8.0, 11.0, 10.0]), from("2026-08-22", Some("2026-08-29")));
-    assert_eq!(on([12.5, 12.5, 12.5, 10.5, 9.0]), from("2026-08-01", Some("2026-08-29")));
+    assert_eq!(on([12.0, 8.0, 8.0, 10.0, 8.0]), (Exhausted::NotBy(date("2026-08-30")), None, None));
+    assert_eq!(on([8.0, 8.0, 8.0, 10.0, 10.5]), from("2026-08-29", "2026-08-29", None));
+    assert_eq!(on([8.0, 8.0, 8.0, 11.0, 10.0]), from("2026-08-22", "2026-08-22", Some("2026-08-29")));
+    assert_eq!(on([12.5, 12.5, 12.5, 10.5, 9.0]), from("2026-08-01", "2026-08-22", Some("2026-08-29")));
     let out = of(&site, days(3), vec![decision(0, Some([13.0, 20.0]))], Vec::new());
     assert_eq!(out.reached[0].range_c(), (Some(8.0), Some(12.0)), "a wish bounds nothing");
     assert_abs_diff_eq!(out.reached[0].by_c().unwrap(), 1.0, epsilon = 1e-12);
@@ -271,6 +278,20 @@ fn scenario_what_moves_is_told_with_the_day_its_crew_must_know() {
     let on = &out.calendar[0];
     assert_eq!((on.date, on.crew_hours, on.moved.len()), (date("2026-08-08"), 3.0, 2));
     assert_eq!(on.book_by, Some(date("2026-08-05")), "a part of a day counts as one");
+}
+
+#[test]
+fn scenario_releases_beyond_their_bounds_are_told() {
+    let site = checked(&format!("{SITE}release: {{ min: 15, max: 30 }}\n"));
+    let mut season = days(8);
+    for (day, flow_m3s) in season.iter_mut().zip([20.0, 14.9, 12.0, 13.0, 15.0, 30.1, 30.0, 34.0]) {
+        day.release.flow_m3s = flow_m3s;
+    }
+    let out = of(&site, season, Vec::new(), Vec::new());
+    let told: Vec<(&str, NaiveDate)> = out.warnings.iter().map(|w| (w.kind, w.date)).collect();
+    assert_eq!(told, [("release.min", date("2026-08-03")), ("release.max", date("2026-08-08"))]);
+    assert!(out.warnings[0].words.contains("on 2 of 8 days"), "{}", out.warnings[0].words);
+    assert!(of(&site, days(3), Vec::new(), Vec::new()).warnings.is_empty());
 }
 
 /// Days on which the summer rule is outside by its temperature, those by its oxygen, and what was left.
@@ -365,6 +386,12 @@ fn scenario_what_to_beware_of() {
     assert_abs_diff_eq!(out.stage_falls[0].m_per_hour, 0.2, epsilon = 1e-9);
     // 20 m3/s past the machines for five days of 24 hours: 4 MW
     assert_abs_diff_eq!(out.generation_lost_mwh.unwrap(), 4.0 * 24.0 * 5.0, epsilon = 1e-9);
+    assert!(out.warnings[0].words.contains("against 0 % on the first day"));
+    assert!(out.warnings[1].words.contains("on 1 of 5 days"));
+    // a plan at its limit that falls a few millimetres more keeps it
+    let mut near = days(2);
+    (near[0].pool_m, near[1].pool_m) = (54.895, 54.29);
+    assert!(of(&site, near, Vec::new(), Vec::new()).warnings.is_empty());
     // what was drawn from the start is not new
     let mut all = days(3);
     for day in &mut all {

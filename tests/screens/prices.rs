@@ -29,7 +29,8 @@ fn scenario_prices_are_asked_told_stopped_and_asked_again() {
     driver.keys("r");
     answer(&mut driver);
     let text = driver.text();
-    for piece in ["> 1  runs out no sooner or later", "  2  runs out 1 day later", "less than we can tell"] {
+    for piece in [">  1  runs out no sooner or later", "   2  runs out 1 day later", "less than we can tell"]
+    {
         assert!(text.contains(piece), "{piece}:\n{text}");
     }
     driver.keys("p");

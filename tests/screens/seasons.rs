@@ -1,6 +1,7 @@
 //! The season screen: asked when it is looked at, stopped, asked again; plans, cases and strategies; a date read.
 
 use crossterm::event::{KeyModifiers, MouseButton, MouseEvent, MouseEventKind};
+use gatemix::mix::limits::{Check, Of, Rule};
 use gatemix::problem::Problem;
 use gatemix::tasks::Failure;
 use gatemix::tui::model::{Cell, SeasonPage, Session};
@@ -9,7 +10,7 @@ use gatemix::tui::{Done, Event, Lane, Sent, Symbols};
 use crate::ahead::{answer, answer_with};
 use crate::driver::Driver;
 use crate::screens::{NORMAL, SMALL, WIDE};
-use crate::sites::usual;
+use crate::sites::{CAST, SITE, site, usual, with};
 
 /// The season screen with an invented answer.
 fn opened(name: &str) -> Driver {
@@ -188,7 +189,7 @@ fn scenario_why_there_is_no_newer_season_is_told_beside_the_old_until_files_chan
     driver.keys("2 Enter").typed("58.5m").keys("Enter 5");
     refuse(&mut driver);
     let text = driver.text();
-    assert!(text.contains("no newer season") && text.contains("the plan is over"), "{text}");
+    assert!(text.contains("no newer") && text.contains("the plan is over"), "{text}");
     assert!(driver.question(Lane::Ahead).is_none(), "it is not asked over and over");
     driver.send(Event::FilesChanged);
     let opening = driver.question(Lane::Quick).unwrap();
@@ -220,7 +221,7 @@ fn scenario_a_limit_of_the_change_that_no_mix_keeps_is_told_with_the_date() {
     let mut driver = Driver::open(Some(&usual("season-past")), NORMAL);
     driver.held = true;
     driver.symbols(Symbols::Ascii).keys("5");
-    let check = Check { rule: Rule::MaxMoves, item: 0, found: 3.0, bound: 1.0 };
+    let check = Check { rule: Rule::MaxMoves, of: Of::Whole, item: 0, found: 3.0, bound: 1.0, room: -2.0 };
     answer_with(&mut driver, |ahead| {
         let decisions = &mut ahead.answer.main.run.decisions;
         decisions.iter_mut().for_each(|decision| decision.past.clear());
@@ -231,4 +232,15 @@ fn scenario_a_limit_of_the_change_that_no_mix_keeps_is_told_with_the_date() {
     assert!(driver.text().contains("NO MIX KEEPS"), "{}", driver.text());
     driver.keys("]");
     assert!(!driver.text().contains("NO MIX KEEPS"), "{}", driver.text());
+}
+
+#[test]
+fn scenario_the_buffer_is_told_beside_what_is_asked() {
+    let text = with(SITE, "high: 14,", "high: 14, buffer: 0.5,");
+    let mut driver = Driver::open(Some(&site("season-buffer", &text, &[("a.csv", CAST)])), NORMAL);
+    driver.held = true;
+    driver.keys("5");
+    answer(&mut driver);
+    assert!(driver.text().contains("asked 9.0 to 14.0 C, planned"), "{}", driver.text());
+    assert!(driver.text().contains("9.5 to 13.5 C"), "{}", driver.text());
 }

@@ -23,7 +23,7 @@ pub fn season(context: &Context, answer: &SeasonAnswer) -> String {
     let site = context.site();
     let mut spoken = run(site, answer, &answer.main);
     // the same plan and strategy in the other cases belong to what is said of the targets
-    let others = answer.cases().into_iter().filter(|r| !std::ptr::eq(*r, &answer.main));
+    let others = answer.cases().into_iter().filter(|r| !std::ptr::eq(*r, &raw const answer.main));
     spoken.targets.extend(others.flat_map(|r| targets(site, r)));
     let shown = SeasonJson {
         head: head(context, &answer.fingerprint, &[]),

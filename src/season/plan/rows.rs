@@ -180,7 +180,8 @@ impl Line {
         let (Some((d0, v0)), Some((d1, v1))) = (before, after) else {
             return before.or(after).map(|(_, value)| *value);
         };
-        let days = |from: NaiveDate, to: NaiveDate| (to.num_days_from_ce() - from.num_days_from_ce()) as f64;
+        let days =
+            |from: NaiveDate, to: NaiveDate| f64::from(to.num_days_from_ce() - from.num_days_from_ce());
         Some(v0 + (v1 - v0) * days(*d0, date) / days(*d0, *d1))
     }
 }

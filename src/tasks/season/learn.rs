@@ -84,7 +84,7 @@ pub fn learn(context: &Context, asked: &LearnAsked, progress: Progress) -> Resul
     let case = Case { name: "as told".into(), air_c: 0.0, wind: 1.0, inflow: 1.0, inflow_c: 0.0 };
     let last = third.date.pred_opt().unwrap_or(third.date);
     let skies = Skies::of_case(context.site(), &context.conditions, &case, first.date, last)
-        .map_err(|why| refused(Problem::refused("no-air", why, "add the weather of those days")))?;
+        .map_err(|why| refused(Problem::refused("no-air", why, "")))?;
     let days = plan.days.iter().filter(|day| day.date < third.date).copied().collect();
     let setup = Setup {
         start: &first.profile,

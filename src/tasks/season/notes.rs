@@ -11,13 +11,10 @@ use crate::units::say;
 
 use super::asked::{Case, Understood};
 
-/// Pools of cast and plan that lie no farther apart are the same, m (choice).
-const POOLS_APART_M: f64 = 0.05;
-
 /// Notes on the plans, the cases and the model.
 pub(super) fn notes(context: &Context, of: &Understood) -> Vec<Problem> {
     let mut out = of_plans(of);
-    out.extend(before_the_plan(context, of));
+    out.extend(before_the_plan(of));
     out.extend(schedule(of));
     out.extend(years(context, of));
     out.extend(of.over.iter().map(|plan| {
@@ -51,33 +48,15 @@ pub(super) fn of_plans(of: &Understood) -> Vec<Problem> {
     out
 }
 
-/// What holds where the cast is older than the plan, and how far both lie apart where it is not.
-fn before_the_plan(context: &Context, of: &Understood) -> Option<Problem> {
+/// What holds where the cast is older than the plan.
+fn before_the_plan(of: &Understood) -> Option<Problem> {
     let (first, _) = of.plan.span()?;
-    if first > of.begins {
-        let words = format!(
-            "the plan begins on {first}: from {} to then its first inflow and release hold, or its pool is gone to in a \
-             straight line",
-            of.begins
-        );
-        return Some(Problem::note("before-plan", words));
-    }
-    let eve = of.begins.pred_opt()?;
-    let planned_m = of.plan.days.iter().find(|day| day.date == eve)?.pool_m?;
-    let apart_m = context.profile.pool_m - planned_m;
-    if apart_m.abs() < POOLS_APART_M {
-        return None;
-    }
-    let way = if apart_m > 0.0 { "above" } else { "below" };
     let words = format!(
-        "the pool of the cast lies {} {way} that of the plan on the day before it; releases of the first days make it good",
-        say::m(apart_m.abs(), 2)
+        "the plan begins on {first}: from {} to then its first inflow and release hold, or its pool is gone to in a \
+         straight line",
+        of.begins
     );
-    Some(Problem::flag(
-        "plan-pool",
-        words,
-        "put the pool as it was into the plan, or a new plan from the cast on",
-    ))
+    (first > of.begins).then(|| Problem::note("before-plan", words))
 }
 
 /// A gate schedule whose changes do not lie in the season.

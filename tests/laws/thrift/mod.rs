@@ -2,5 +2,6 @@
 
 mod brute;
 mod many;
+mod planned;
 mod strategies;
 pub(crate) mod tiny;

@@ -9,7 +9,7 @@ use gatemix::site::Strategy;
 
 use super::tiny::{Of, Tiny, begins};
 
-const OF: Of = Of {
+pub(super) const OF: Of = Of {
     gates: 3,
     on_a_well: false,
     days: 10,

@@ -36,11 +36,11 @@ pub struct Tiny {
     pub of: Of,
     site: Site,
     start: Profile,
-    plan: Plan,
+    pub plan: Plan,
 }
 
 pub const SURFACE_M: f64 = 24.0;
-const AREA_M2: f64 = 1.0e5;
+pub const AREA_M2: f64 = 1.0e5;
 const LAYER_M: f64 = 2.0;
 
 pub fn begins() -> NaiveDate {
@@ -49,14 +49,28 @@ pub fn begins() -> NaiveDate {
 
 impl Tiny {
     pub fn new(of: Of) -> Self {
-        let site = dam(&of, &[]);
-        Self::at(of, site)
+        Self::with(of, &[])
     }
 
     /// The same season at a dam whose file goes on with more lines.
     pub fn with(of: Of, more: &[&str]) -> Self {
-        let site = dam(&of, more);
+        Self::edited(of, &|text| text + &more.join("\n"))
+    }
+
+    /// The same season at a dam whose file is changed.
+    pub fn edited(of: Of, edit: &dyn Fn(String) -> String) -> Self {
+        let site = dam(&of, edit);
         Self::at(of, site)
+    }
+
+    /// The same by the pool: from a pool of the day before it begins (m) so far down each day (m), to the end.
+    pub fn by_pool(mut self, pool_m: f64, fall_m: f64) -> Self {
+        let inflow_m3s = 0.8 * self.of.release_m3s;
+        for (i, day) in self.plan.days.iter_mut().enumerate() {
+            (day.pool_m, day.release_m3s) = (Some(pool_m - fall_m * (i + 1) as f64), None);
+            day.inflow_m3s = inflow_m3s;
+        }
+        self
     }
 
     fn at(of: Of, site: Site) -> Self {
@@ -139,7 +153,7 @@ impl Tiny {
     }
 }
 
-fn dam(of: &Of, more: &[&str]) -> Site {
+fn dam(of: &Of, edit: &dyn Fn(String) -> String) -> Site {
     let turn = begins() + Days::new(u64::from(of.days / 2));
     let mut text = String::from(
         "name: Tiny Dam (invented)\nunits: { length: m, area: m2, volume: m3, flow: m3/s, temperature: C }\n\
@@ -169,11 +183,8 @@ fn dam(of: &Of, more: &[&str]) -> Site {
         turn.format("%m-%d"),
         of.late_high_c,
     );
-    for line in more {
-        text += line;
-        text += "\n";
-    }
-    let mut site = site(&text, "site.yaml").site.unwrap();
+    let read = site(&edit(text), "site.yaml");
+    let mut site = read.site.unwrap_or_else(|| panic!("{:?}", read.problems));
     site.season.layer_m = LAYER_M;
     site
 }

@@ -13,6 +13,9 @@ use super::{Lines, Screen, labelled, say};
 /// Columns of the label of an answer.
 const MARGIN: usize = 9;
 
+/// Columns of the mark and the number of a mix.
+const NUMBER: usize = 6;
+
 /// What is rejected: by which limits, how many mixes, the nearest miss of each; what was examined.
 pub(super) fn rejected(screen: &Screen, width: usize) -> Lines {
     let (context, answer, system) = (&screen.ranked.context, &screen.ranked.answer, screen.model.system());
@@ -79,9 +82,10 @@ pub(super) fn prices(screen: &Screen, width: usize) -> Lines {
     for ((at, line), mix) in season::prices(prices).iter().enumerate().zip(&ranked.answer.mixes) {
         let chosen = at == session.rank.at;
         let (mark, role) = if chosen { (">", Role::Chosen) } else { (" ", Role::Plain) };
-        say(&mut out, &format!("{mark}{line}"), width, 5, role);
+        let (number, words) = line.trim_start().split_once("  ").unwrap_or(("", line));
+        labelled(&mut out, &format!("{mark} {number:>2}"), NUMBER, words, width, role);
         let gates = openings(&ranked.context, mix, model.system()).join(", ");
-        say(&mut out, &format!("     {gates}"), width, 5, Role::Quiet);
+        labelled(&mut out, "", NUMBER, &gates, width, Role::Quiet);
     }
     for note in &prices.notes {
         labelled(&mut out, "Note", MARGIN, &note.advice(model.system()), width, Role::Plain);

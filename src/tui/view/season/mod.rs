@@ -53,16 +53,14 @@ impl Screen<'_> {
         })
     }
 
-    /// Whether the schedule of a strategy that is solved on a case has seen the one shown.
-    fn seen_words(&self) -> &'static str {
+    /// Of a strategy that is solved on a case: whether it was this one.
+    fn seen_words(&self) -> Option<&'static str> {
         let (shown, answer) = (self.shown.run, &self.shown.ahead.answer);
         match answer.seen(shown) {
-            Seen::All => "; SOLVED ON THIS CASE: foresight",
-            Seen::Weather => "; solved in this weather under another plan",
-            Seen::Nothing if answer.main.foresight && shown.run.strategy == answer.main.run.strategy => {
-                "; this case was not seen"
-            }
-            Seen::Nothing => "",
+            Seen::All => Some("SOLVED ON THIS CASE: foresight, no evidence"),
+            Seen::Weather => Some("solved in this weather under another plan"),
+            Seen::Nothing => (answer.main.foresight && shown.run.strategy == answer.main.run.strategy)
+                .then_some("this case was not seen"),
         }
     }
 
@@ -70,12 +68,11 @@ impl Screen<'_> {
     fn heading(&self) -> String {
         let (run, answer) = (&self.shown.run.run, &self.shown.ahead.answer);
         format!(
-            "plan {} | case {} | {}, every {} d{}",
+            "plan {} | case {} | {}, every {} d",
             harmless(&run.plan),
             harmless(&run.case),
             harmless(&run.strategy),
-            answer.decide_days,
-            self.seen_words()
+            answer.decide_days
         )
     }
 }

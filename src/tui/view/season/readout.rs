@@ -23,6 +23,9 @@ pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
     if let Some(words) = screen.old_words() {
         say(&mut out, &words, width, 2, Role::Old);
     }
+    if let Some(words) = screen.seen_words() {
+        say(&mut out, words, width, 2, Role::Warn);
+    }
     let days = &screen.shown.run.run.days;
     match screen.day().and_then(|i| Some((i, days.get(i)?))) {
         Some((i, day)) => of_day(screen, (i, day), width, &mut out),
