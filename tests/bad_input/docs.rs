@@ -94,10 +94,8 @@ fn scenario_every_example_of_the_files_reference_is_accepted() {
             ["csv", "record", _] => records.push(text),
             // a file beside the casts, of the site above it
             ["csv", "side", name] => sides.push((folders.len() - 1, name.to_owned(), text)),
-            // plans and schedules have a test of their own below
-            ["csv", "plan" | "schedule", _] => {}
-            // weather has a test of its own below
-            ["csv", "weather"] | ["text"] => {}
+            // plans, schedules and weather have tests of their own below
+            ["csv", "plan" | "schedule", _] | ["csv", "weather"] | ["text"] => {}
             _ => panic!("unknown kind of example: {words}"),
         }
     }

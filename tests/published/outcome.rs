@@ -341,13 +341,11 @@ fn scenario_degree_days_reach_their_stages() {
 
 #[test]
 fn scenario_deep_water_drawn_from_the_start_is_told_where_it_grows() {
-    let site = checked(SITE);
-    let mut season = days(3);
+    let (site, mut season) = (checked(SITE), days(3));
     for (day, share) in season.iter_mut().zip([0.2, 0.24, 0.26]) {
         day.release.oxygen_low_share = share;
     }
-    let out = of(&site, season, Vec::new(), Vec::new());
-    let [told] = &out.warnings[..] else { panic!("{:?}", out.warnings) };
+    let told = &of(&site, season, Vec::new(), Vec::new()).warnings[0];
     assert_eq!((told.kind, told.date), ("deep-water", date("2026-08-03")));
     assert!(told.words.starts_with("26 % of the release") && told.words.contains("20 % on the first day"));
 }
