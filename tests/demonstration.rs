@@ -225,15 +225,18 @@ fn scenario_plans_are_sound_and_go_from_the_newest_cast_to_the_end_of_november()
         let mut named: Vec<&str> = Vec::new();
         for listed in folder.plans() {
             let text = &listed.source.as_ref().unwrap().text;
-            assert!(
-                text.lines().next().unwrap().ends_with(": invented plan of an invented place."),
-                "{}",
-                listed.file
-            );
+            let head = text.lines().next().unwrap();
+            assert!(head.contains("invented") && head.ends_with(" of an invented place."), "{}", listed.file);
             let plan = listed.plan.as_deref().unwrap_or_else(|| panic!("{:#?}", listed.problems));
             assert!(plan.notes.iter().all(|p| p.weight == Weight::Note), "{:#?}", plan.notes);
             let (first, last) = plan.span().unwrap();
-            assert!(first <= folder.newest_time().unwrap().date_naive() && last.to_string() == "2026-11-30");
+            let newest = folder.newest_time().unwrap().date_naive();
+            // what has been is there to be learned from
+            assert!(
+                first <= newest && (last < newest || last.to_string() == "2026-11-30"),
+                "{}",
+                listed.file
+            );
             assert!(!named.contains(&plan.name.as_str()), "{}", plan.name);
             named.push(&plan.name);
         }

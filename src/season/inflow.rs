@@ -8,7 +8,7 @@ use crate::water;
 use super::layers::{Layer, Layers};
 use super::step::Inflow;
 
-/// Most of the surface layer that the inflow takes in at once.
+/// Most of the surface layer that the inflow takes in at once (choice).
 const MOST_OF_SURFACE: f64 = 0.5;
 
 /// Where a water lies among layers, from the bed up.

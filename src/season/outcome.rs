@@ -233,7 +233,7 @@ pub struct Outcome {
     pub warnings: Vec<Stopping>,
 }
 
-/// Hours of a day.
+/// Hours of a day; exact.
 const HOURS: f64 = 24.0;
 
 /// What comes of a run.

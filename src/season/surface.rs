@@ -10,7 +10,7 @@ use super::layers::Layer;
 use super::mixing::{self, answered};
 use super::skies::Sky;
 
-/// Heat of a cubic metre for each degree, J/m3/C, with fixed density and specific heat.
+/// Heat of a cubic metre for each degree, J/m3/C, with fixed density and specific heat (derived).
 pub(super) const HEAT_J_M3_C: f64 = RHO_REF_KG_M3 * CP_REF_J_KG_K;
 
 /// What came through the surface.

@@ -239,7 +239,10 @@ mod tests {
         assert_eq!(c(4.2, 23.8, Some(10.5)), [5.0, 10.5, 15.0, 20.0]);
         assert_eq!(c(4.2, 23.8, Some(30.0)), [5.0, 10.0, 15.0, 20.0]);
         let f = edges((5.0, 24.0), Some(12.0), Dimension::Temperature, System::Us);
-        assert_eq!(f, [50.0, 53.6, 60.0, 70.0]);
+        assert!(
+            f.len() == 4 && f.iter().zip([50.0, 53.6, 60.0, 70.0]).all(|(a, b)| (a - b).abs() < 1e-9),
+            "{f:?}"
+        );
         for k in 0..60 {
             let edges = c(3.3, 3.3 + 0.7 * f64::from(k), Some(5.1));
             assert!(edges.len() < BANDS && edges.is_sorted(), "{edges:?}");

@@ -70,7 +70,11 @@ fn scenario_a_pool_that_falls_and_loses_its_upper_gate() {
         let lines = drawn(&picture(120), width, height);
         let all = lines.join("\n");
         println!("{all}\n");
-        assert!(lines[usize::from(height > 20)].starts_with("@@ <10  ## 10-12  %% 12-15"), "{all}");
+        let legend = &lines[usize::from(height > 20)];
+        assert!(
+            legend.starts_with('@') && ["<10", "10-12", "12-15"].iter().all(|b| legend.contains(b)),
+            "{all}"
+        );
         let upper = lines.iter().find(|l| l.contains("Upper>")).unwrap();
         // open at first, then lost, then in the air
         assert!(upper.contains("===") && upper.contains('x'), "{all}");
