@@ -63,8 +63,6 @@ pub struct Unbalanced {
     pub words: String,
 }
 
-/// Longest sub-step, s (choice): a day of mean air.
-const LONGEST_S: f64 = 86_400.0;
 /// Shortest sub-step, s (choice): what a layer cannot give in it comes from the next.
 const SHORTEST_S: f64 = 900.0;
 /// Seconds of a day.
@@ -106,7 +104,7 @@ pub fn day(
         let mut drawings = outflow::drawings(&column, &levels, &edges, steps > 0).map_err(fails)?;
         zones.get_or_insert_with(|| drawings.iter().map(|d| d.zone).collect::<Vec<_>>());
         let taken_in = site.season.inflow_takes_in * forcing.inflow.flow_m3s.max(0.0);
-        let longest = outflow::longest_s(&now, &drawings, taken_in).clamp(SHORTEST_S, LONGEST_S);
+        let longest = outflow::longest_s(&now, &drawings, taken_in).clamp(SHORTEST_S, site.season.step_s);
         let parts = (left_s / longest).ceil().max(1.0);
         let seconds = left_s / parts;
         left_s = if parts > 1.0 { left_s - seconds } else { 0.0 };

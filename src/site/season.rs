@@ -109,6 +109,8 @@ pub struct SeasonInputs {
     pub knobs: Knobs,
     /// Thickness of a layer, m.
     pub layer_m: f64,
+    /// Longest step of the pool, s; no key sets it: it is halved to see what that changes.
+    pub step_s: f64,
     /// Days between decisions.
     pub decide_days: u32,
     /// How mixes are chosen.
@@ -145,6 +147,8 @@ impl Default for SeasonInputs {
         Self {
             knobs: Knobs::default(),
             layer_m: 1.0,
+            // choice: a day of mean air
+            step_s: 86_400.0,
             decide_days: 7,
             strategy: Strategy::default(),
             inflow_takes_in: 0.2,

@@ -185,30 +185,31 @@ fn seasons() -> Option<bool> {
     )
 }
 
-/// How far the release moves when layers are half as thick.
+/// How far the release moves when layers are half as thick, and when steps are half as long.
 fn convergence() -> Option<()> {
     let bench = Bench::open()?;
     let plan = bench.plan(DAYS);
     let skies = bench.skies(&plan)?;
-    let at = |layer_m: f64| {
+    let at = |layer_m: f64, hours: f64| {
         let mut site = (*skies.site).clone();
-        site.season.layer_m = layer_m;
+        (site.season.layer_m, site.season.step_s) = (layer_m, 3600.0 * hours);
         let skies = Skies { site: Arc::new(site), ..skies.clone() };
         bench.season(&plan, &skies, Strategy::Hold).map(|found| found.1)
     };
-    let runs: Vec<Run> = [2.0, 1.0, 0.5].into_iter().map(at).collect::<Option<_>>()?;
-    for (thick, pair) in [2.0, 1.0].into_iter().zip(runs.windows(2)) {
-        let apart: Vec<f64> = pair[0]
-            .days
-            .iter()
-            .zip(&pair[1].days)
-            .map(|(a, b)| (a.release.temperature_c - b.release.temperature_c).abs())
-            .collect();
+    let halved = [
+        ("layers of 2 m", (2.0, 24.0), (1.0, 24.0)),
+        ("layers of 1 m", (1.0, 24.0), (0.5, 24.0)),
+        ("steps of 24 h", (1.0, 24.0), (1.0, 12.0)),
+        ("steps of 12 h", (1.0, 12.0), (1.0, 6.0)),
+    ];
+    for (what, whole, half) in halved {
+        let (whole, half) = (at(whole.0, whole.1)?, at(half.0, half.1)?);
+        let days = whole.days.iter().zip(&half.days);
+        let apart: Vec<f64> =
+            days.map(|(a, b)| (a.release.temperature_c - b.release.temperature_c).abs()).collect();
         let mean = apart.iter().sum::<f64>() / apart.len().max(1) as f64;
         let most = apart.iter().copied().fold(0.0, f64::max);
-        println!(
-            "layers of {thick} m halved: the release moves by {mean:.3} C in the mean, {most:.3} C at most"
-        );
+        println!("{what} halved: the release moves by {mean:.3} C in the mean, {most:.3} C at most");
     }
     Some(())
 }

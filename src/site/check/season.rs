@@ -64,6 +64,7 @@ pub(super) fn season(raw: &Raw, problems: &mut Vec<Problem>) -> SeasonInputs {
             bed_demand_g_m2_day: r.bed_demand_g_m2_day.unwrap_or(usual.knobs.bed_demand_g_m2_day),
         },
         layer_m: r.layer_m.unwrap_or(usual.layer_m),
+        step_s: usual.step_s,
         decide_days: u32::try_from(days).unwrap_or(usual.decide_days),
         strategy: strategy(r, problems),
         inflow_takes_in: r.inflow_takes_in.unwrap_or(usual.inflow_takes_in),

@@ -31,7 +31,8 @@ fn gate(context: &Context, life: &GateLife, system: System) -> String {
         return format!("{name:<NAME$}not on any day: {}", reason.unwrap_or_default());
     };
     let Some(last) = life.last_day else {
-        return format!("{name:<NAME$}from {first} to the end");
+        let before = reason.map_or_else(String::new, |why| format!("; not before: {why}"));
+        return format!("{name:<NAME$}from {first} to the end{before}");
     };
     let book = life.book_by.map_or_else(String::new, |by| format!("; open then: {}", book(context, by)));
     format!("{name:<NAME$}from {first} to {last}; then {}{book}", reason.unwrap_or_default())

@@ -86,7 +86,7 @@ fn scenario_a_pool_that_falls_and_loses_its_upper_gate() {
         assert!(strip("outside").ends_with('!'), "{all}");
         let axis = lines.last().unwrap();
         assert!(axis.contains("|Jul 14") && axis.contains("|Sep") && axis.contains('^'), "{all}");
-        assert!(all.contains("million m3") || height < 20, "{all}");
+        assert!(all.contains("cold, hm3") || height < 20, "{all}");
     }
 }
 
