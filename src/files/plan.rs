@@ -124,16 +124,7 @@ fn read(source: &Source, site: &Site, problems: &mut Vec<Problem>) -> Option<Raw
         let found: Vec<Column> = cells.iter().filter_map(|c| Column::parse(c)).collect();
         found.contains(&Column::Date) && found.len() > 1
     };
-    let table = match Table::parse_with(&source.text, &is_header) {
-        Ok(table) => table,
-        Err(found) => {
-            // what the table says of a header it does not find speaks of casts
-            let lost = |p: &Problem| p.kind == "no-header" && p.place.line.is_none();
-            problems.extend(found.into_iter().map(|p| if lost(&p) { no_header() } else { p }));
-            return None;
-        }
-    };
-    problems.extend(table.notes.iter().cloned());
+    let table = Table::of(&source.text, &is_header, no_header, problems)?;
     let columns: Vec<Option<Column>> = table.columns.iter().map(|c| Column::parse(c)).collect();
     if !header(&table, &columns, problems) {
         return None;

@@ -35,16 +35,7 @@ type Changes = Vec<(NaiveDate, Vec<Gate>)>;
 
 fn read(source: &Source, site: &Site, problems: &mut Vec<Problem>) -> Option<Changes> {
     let is_header = |cells: &[String]| cells.first().is_some_and(|c| c.eq_ignore_ascii_case(DATE));
-    let table = match Table::parse_with(&source.text, &is_header) {
-        Ok(table) => table,
-        Err(found) => {
-            // what the table says of a header it does not find speaks of casts
-            let lost = |p: &Problem| p.kind == "no-header" && p.place.line.is_none();
-            problems.extend(found.into_iter().map(|p| if lost(&p) { no_header(site) } else { p }));
-            return None;
-        }
-    };
-    problems.extend(table.notes.iter().cloned());
+    let table = Table::of(&source.text, &is_header, || no_header(site), problems)?;
     let mut outlets = Vec::with_capacity(table.columns.len());
     for (c, name) in table.columns.iter().enumerate().skip(1) {
         match site.outlet(name) {

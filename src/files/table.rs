@@ -68,6 +68,27 @@ impl Table {
         read(text, Some(is_header))
     }
 
+    /// The same of what is no cast: `no_header` says what its header should be, since the table speaks of casts. Problems
+    /// and notes are pushed; `None` where the text cannot be read.
+    pub fn of(
+        text: &str,
+        is_header: &IsHeader<'_>,
+        no_header: impl Fn() -> Problem,
+        problems: &mut Vec<Problem>,
+    ) -> Option<Self> {
+        match Self::parse_with(text, is_header) {
+            Ok(table) => {
+                problems.extend(table.notes.iter().cloned());
+                Some(table)
+            }
+            Err(found) => {
+                let lost = |p: &Problem| p.kind == "no-header" && p.place.line.is_none();
+                problems.extend(found.into_iter().map(|p| if lost(&p) { no_header() } else { p }));
+                None
+            }
+        }
+    }
+
     /// Number of rows.
     pub fn len(&self) -> usize {
         self.row_lines.len()

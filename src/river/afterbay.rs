@@ -3,6 +3,7 @@
 //! Methods: `docs/methods.md`, section 6.
 
 use crate::site::{Afterbay, Decay};
+use crate::units::DAY_S;
 use crate::water::{reaeration_at_per_day, saturation_mg_l};
 
 use super::sky::Sky;
@@ -23,8 +24,6 @@ const BALANCING: usize = 20;
 
 /// Seconds of an hour (standard).
 const HOUR_S: f64 = 3600.0;
-/// Seconds of a day (standard).
-const DAY_S: f64 = 86_400.0;
 
 /// Hours that water stays, at a flow.
 pub(super) fn stay_h(bay: &Afterbay, flow_m3s: f64) -> f64 {

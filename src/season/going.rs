@@ -13,6 +13,7 @@ use crate::profile::{Column, Profile};
 use crate::rank::Progress;
 use crate::river::{self, Figures};
 use crate::site::Site;
+use crate::units::DAY_S;
 
 use super::ahead::{ahead, forcing};
 use super::aims::asking;
@@ -23,9 +24,6 @@ use super::run::{Ended, Run, SeasonDay, Setup};
 use super::set::{Flowing, flowing};
 use super::step::day;
 use super::strategy::{Wants, is_due, name, set_by, wants};
-
-/// Length of the day, s; exact.
-const DAY_S: f64 = 86_400.0;
 
 /// A season under way.
 #[derive(Clone)]

@@ -3,6 +3,7 @@
 //! Methods: `docs/methods.md`, section 8.
 
 use crate::site::Site;
+use crate::units::DAY_S;
 use crate::water;
 
 use super::layers::Layers;
@@ -10,8 +11,6 @@ use super::mixing;
 
 /// How demand rises with each degree (recalled: 1.065 for beds; taken for the water too, choice).
 const PER_C: f64 = 1.065;
-/// Seconds of a day.
-const DAY_S: f64 = 86_400.0;
 
 /// Demand for oxygen at a temperature.
 ///

@@ -7,7 +7,7 @@ use chrono::NaiveDate;
 use crate::mix::{Drawn, Level};
 use crate::profile::Column;
 use crate::site::Site;
-use crate::units::say;
+use crate::units::{DAY_S, say};
 
 use super::balance::Balance;
 use super::layers::Layers;
@@ -65,8 +65,6 @@ pub struct Unbalanced {
 
 /// Shortest sub-step, s (choice): what a layer cannot give in it comes from the next.
 const SHORTEST_S: f64 = 900.0;
-/// Seconds of a day.
-const DAY_S: f64 = 86_400.0;
 /// Most that a balance may fail to close, as a share of its largest term (choice: round-off of a day stays a
 /// thousand times below).
 pub const MOST_OPEN: f64 = 1e-9;

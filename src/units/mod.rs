@@ -19,7 +19,7 @@ pub use folder::Folder;
 pub use parse::{UnitError, parse};
 pub use say::in_system;
 pub use show::{System, figure, show};
-pub use unit::{Dimension, Unit};
+pub use unit::{DAY_S, Dimension, Unit};
 
 /// How the property tests beside the sources run; cases that fail are kept with those of the other tests.
 #[cfg(test)]

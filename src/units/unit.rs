@@ -9,8 +9,8 @@ const FOOT_M: f64 = 0.3048;
 const ACRE_M2: f64 = 43_560.0 * FOOT_M * FOOT_M;
 /// US gallon, 231 cubic inches, m3. Exact (NIST SP 811, Appendix B; from memory).
 const US_GALLON_M3: f64 = 3.785_411_784e-3;
-/// Length of the day of flow units, s.
-const DAY_S: f64 = 86_400.0;
+/// Length of the day, s; exact.
+pub const DAY_S: f64 = 86_400.0;
 
 /// What a number measures.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Hash, PartialOrd, Ord)]

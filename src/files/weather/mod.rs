@@ -36,16 +36,7 @@ fn read(source: &Source, site: &Site, problems: &mut Vec<Problem>) -> Option<Wea
         let has = |told| cells.iter().filter_map(|c| Column::parse(c)).any(|c| c.told() == told);
         has(Told::When) && has(Told::Air)
     };
-    let table = match Table::parse_with(&source.text, &is_header) {
-        Ok(table) => table,
-        Err(found) => {
-            // what the table says of a header it does not find speaks of casts
-            let lost = |p: &Problem| p.kind == "no-header" && p.place.line.is_none();
-            problems.extend(found.into_iter().map(|p| if lost(&p) { no_header() } else { p }));
-            return None;
-        }
-    };
-    problems.extend(table.notes.iter().cloned());
+    let table = Table::of(&source.text, &is_header, no_header, problems)?;
     let columns = header::columns(&table, problems);
     let (height_m, forecast_from) = meta(&table, site, problems);
     if any_refused(problems) {

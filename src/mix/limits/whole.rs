@@ -2,11 +2,10 @@
 
 use crate::mix::{Blend, Setting};
 use crate::site::Site;
+use crate::units::DAY_S;
 
 use super::{Check, Moves, Of, Rule, moves};
 
-/// Length of the day, s; exact.
-const DAY_S: f64 = 86_400.0;
 /// Hours over which a change is made where the site does not say (choice: the most cautious).
 const CHANGE_HOURS: f64 = 1.0;
 

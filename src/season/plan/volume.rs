@@ -6,12 +6,10 @@ use chrono::NaiveDate;
 
 use crate::problem::Problem;
 use crate::site::Site;
-use crate::units::say;
+use crate::units::{DAY_S, say};
 
 use super::{PlanDay, RawPlan, RawPlanRow};
 
-/// Seconds of a day (standard).
-const DAY_S: f64 = 86_400.0;
 /// A pool that comes this near to what the plan says follows it, m (choice: wind and waves move a gauge as much).
 const FOLLOWS_M: f64 = 0.1;
 /// Round-off of a limit, as a share of it (choice).

@@ -8,12 +8,10 @@ use crate::mix::{
 use crate::rank::Ranked;
 use crate::tasks::Context;
 use crate::tasks::change::{Change, change};
+use crate::units::DAY_S;
 use crate::withdrawal::CrestForm;
 
 use super::shown::{Shown, ShownPart, Unsure};
-
-/// Seconds of a day.
-const DAY_S: f64 = 86_400.0;
 
 /// What shown mixes are made with.
 pub(super) struct Kitchen<'a> {
