@@ -12,11 +12,13 @@ mod season;
 mod water;
 mod write;
 
+use std::path::Path;
+
 use chrono::NaiveDate;
 use ratatui::buffer::Buffer;
 use ratatui::layout::{Position, Rect};
 
-use crate::problem::harmless;
+use crate::problem::{Problem, Weight, any_refused, harmless};
 use crate::report::text;
 use crate::tasks::{Context, Failure};
 use crate::units::System;
@@ -139,10 +141,22 @@ fn failure_words(failure: &Failure, system: System) -> String {
     match failure {
         Failure::Usage(words) => harmless(words),
         Failure::Refused(problems, _) => {
-            problems.iter().map(|p| p.advice(system)).collect::<Vec<_>>().join("; ")
+            // what refuses, not what else was said of the files
+            let all = !any_refused(problems);
+            let refuses = |p: &&Problem| all || p.weight == Weight::Refused;
+            let words = |p: &Problem| place(p) + &p.advice(system);
+            problems.iter().filter(refuses).map(words).collect::<Vec<_>>().join("; ")
         }
         Failure::Stopped => "stopped".to_owned(),
     }
+}
+
+/// `1-planned.csv:11: ` of a problem on a line of a file; nothing of one that was typed.
+fn place(problem: &Problem) -> String {
+    let (Some(file), Some(line)) = (&problem.place.file, problem.place.line) else { return String::new() };
+    let name =
+        Path::new(file).file_name().map_or_else(|| file.as_str().into(), |name| name.to_string_lossy());
+    format!("{}:{line}: ", harmless(&name))
 }
 
 /// The answer of the screen as the command gives it, in the units shown.
@@ -164,5 +178,20 @@ pub(super) fn answer_text(model: &Model) -> Option<String> {
             let ahead = session.season_shown()?.ahead;
             Some(text::season(&in_units(&ahead.context), &ahead.answer))
         }
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn scenario_a_file_that_is_refused_is_named_with_its_line_and_nothing_else_is_told() {
+        let note = Problem::note("inflow-solids", "no solids are given").in_file("/far/plans/a.csv");
+        let order = Problem::refused("date-order", "the days go back", "earlier ones first");
+        let order = order.in_file("/far/plans/a.csv").on_line(11);
+        let told = |problems| failure_words(&Failure::Refused(problems, System::Si), System::Si);
+        assert_eq!(told(vec![note, order]), "a.csv:11: the days go back; earlier ones first");
+        assert_eq!(told(vec![Problem::refused("dry", "the gate is dry", "")]), "the gate is dry");
     }
 }

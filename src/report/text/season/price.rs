@@ -53,7 +53,10 @@ fn runs_out(price: &Price) -> String {
         [true, false] if change.is_told() => {
             format!("runs out, which it else does not, {} before the end", days(-change.days as f64 - 1.0))
         }
-        _ => format!("runs out {}", told(change, ("later", "sooner"), "no sooner or later")),
+        _ => {
+            let colon = if change.is_told() || (low, high) == (0, 0) { "" } else { ":" };
+            format!("runs out{colon} {}", told(change, ("later", "sooner"), "no sooner or later"))
+        }
     }
 }
 
