@@ -2,7 +2,7 @@
 
 use chrono::NaiveDate;
 
-use crate::mix::Setting;
+use crate::mix::{Blend, Setting};
 use crate::problem::harmless;
 use crate::report::text::season::{at_place, exhausted_words, moved_words, outside_by, past};
 use crate::report::text::{setting_words, volume};
@@ -49,14 +49,11 @@ fn of_day(screen: &Screen, (i, day): (usize, &SeasonDay), width: usize, out: &mu
     let pool = value(day.pool_m, Dimension::Length, 1);
     add(&format!("pool {pool}, inflow {}", flow(day.inflow_m3s)), Role::Plain);
     let oxygen = |o: Option<f64>| o.map_or_else(|| "oxygen ?".to_owned(), |o| format!("{o:.1} mg/L"));
-    let release = &day.release;
-    let words = format!(
-        "release {}: {}, {}",
-        flow(release.flow_m3s),
-        c(release.temperature_c),
-        oxygen(release.oxygen_below_mg_l)
-    );
-    add(&words, Role::Tried);
+    let left = |release: &Blend| {
+        let (warm, oxygen) = (c(release.temperature_c), oxygen(release.oxygen_below_mg_l));
+        format!("release {}: {warm}, {oxygen}", flow(release.flow_m3s))
+    };
+    add(&day.release.as_ref().map_or_else(|| "no release".to_owned(), left), Role::Tried);
     if let Some(point) = screen.point() {
         let figures = day.points.as_ref().and_then(|p| p.get(point));
         let words = figures.map_or_else(
