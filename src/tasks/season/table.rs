@@ -103,6 +103,7 @@ impl Table<'_> {
             skies,
             choosing: choosing.clone(),
             decide_days: of.decide_days,
+            order: &of.order,
         };
         let run = run(&setup, progress).ok_or(Failure::Stopped)?;
         let outcome = outcome(&setup, &run);
