@@ -98,7 +98,7 @@ fn law_limits_of_the_change_bind_the_mix_and_not_what_is_within_reach() {
 /// What a level can pass beyond the last whole tenth of the release is within reach, and may be what reaches the target.
 #[test]
 fn law_what_is_within_reach_is_not_cut_to_tenths() {
-    // cold water up to 16 m and one gate in it, which passes 37 % of the release
+    // cold water up to 11 m and one gate in it, which passes 37 % of the release
     let of = Of { gates: 2, thermocline_m: 11.0, early_high_c: 16.3, late_high_c: 16.3, ..OF };
     let few = |text: String| text.replace("name: G0,", "name: G0, flow: { max: 0.444 },");
     let tiny = Tiny::edited(of, &few);
@@ -108,7 +108,7 @@ fn law_what_is_within_reach_is_not_cut_to_tenths() {
     let share = |at: f64| at * of.cold_c + (1.0 - at) * of.warm_c;
     let coldest_c = run.decisions[0].attainable_c.unwrap()[0];
     assert!(share(0.3) > of.early_high_c && share(0.37) < of.early_high_c);
-    assert!((coldest_c - share(0.37)).abs() < 0.1, "{coldest_c} of {}", share(0.37));
+    assert!((coldest_c - share(0.37)).abs() < 0.2, "{coldest_c} of {}", share(0.37));
     assert!(outcome(&setup, &run).exhausted.on() != Some(run.decisions[0].date));
 }
 
