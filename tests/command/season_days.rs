@@ -116,6 +116,7 @@ fn scenario_a_limit_of_the_stage_is_held_against_the_season_and_the_river() {
 #[test]
 fn scenario_a_cast_that_leaves_no_water_is_refused_and_not_said_to_be_stopped() {
     let folder = usual();
-    let words = run(&["season", folder.named(), "--on", "2025-07-14T10:30", "--pool", "0.1"]).failed_with(3);
+    let answer = run(&["season", folder.named(), "--on", "2025-07-14T10:30", "--pool", "0.1"]);
+    let words = answer.failed_with(3);
     assert!(words.contains("samples") && !words.contains("stopped"), "{words}");
 }

@@ -31,7 +31,7 @@ impl Draft {
         Self {
             changed: Changed::default(),
             release_m3s: None,
-            order: Criterion::NAMES.map(|c| c.1).to_vec(),
+            order: Criterion::USUAL.to_vec(),
             without: Vec::new(),
             tries: vec![now],
             at: 0,
