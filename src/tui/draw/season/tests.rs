@@ -36,8 +36,8 @@ pub(crate) fn picture(days: usize) -> SeasonPicture {
             span: (6.0, 20.0),
             shaded: ("attainable".into(), (0..days).map(|_| Some([7.0, 19.0])).collect()),
             lines: vec![
-                line("asked", Role::Range, Stroke::Dotted, "-", &|_| Some(13.0)),
-                line("release", Role::Temperature, Stroke::Heavy, "*", &|d| Some(9.0 + 8.0 * share(d))),
+                line("asked", Role::Range, Stroke::Thin, "-", &|_| Some(13.0)),
+                line("release", Role::Temperature, Stroke::Broad, "*", &|d| Some(9.0 + 8.0 * share(d))),
             ],
         },
         cold: Some(CurvesThrough {
@@ -45,14 +45,17 @@ pub(crate) fn picture(days: usize) -> SeasonPicture {
             dimension: Dimension::Volume,
             span: (0.0, 5e7),
             shaded: (String::new(), Vec::new()),
-            lines: vec![line("usable", Role::Cold, Stroke::Heavy, "*", &|d| Some(5e7 * (1.0 - share(d))))],
+            lines: vec![line("usable", Role::Cold, Stroke::Broad, "*", &|d| Some(5e7 * (1.0 - share(d))))],
         }),
         gates: vec![
             GateThrough { name: "Upper".into(), elevation_m: 30.0, days: (0..days).map(upper).collect() },
             GateThrough { name: "Sluice".into(), elevation_m: 4.0, days: vec![GateDay::Shut; days] },
         ],
         moves: vec![(0, 2, false), (days / 2, 1, true)],
-        outside: (days * 2 / 3..days).collect(),
+        outside: vec![
+            ("outside C".into(), (days * 2 / 3..days).collect()),
+            ("outside O2".into(), (0..days / 5).collect()),
+        ],
     }
 }
 
