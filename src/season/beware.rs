@@ -54,9 +54,9 @@ fn releases(site: &Site, days: &[SeasonDay]) -> [Option<Stopping>; 2] {
     type Beyond = fn(f64, f64) -> bool;
     let of = |bound: Option<f64>, kind, side, beyond: Beyond, farther: fn(f64, f64) -> f64| {
         let bound_m3s = bound?;
-        let over = || days.iter().filter(|day| beyond(day.release.flow_m3s, bound_m3s));
+        let over = || days.iter().filter(|day| beyond(day.release_m3s(), bound_m3s));
         let first = over().next()?;
-        let farthest = over().map(|day| day.release.flow_m3s).reduce(farther)?;
+        let farthest = over().map(SeasonDay::release_m3s).reduce(farther)?;
         let words = format!(
             "what the plan releases in this case is {side} {kind} {} on {} of {} days, first on this one, at worst {}",
             say::m3s(bound_m3s, 1),
@@ -77,16 +77,17 @@ fn releases(site: &Site, days: &[SeasonDay]) -> [Option<Stopping>; 2] {
 /// Water with hardly any oxygen that comes into the release, where there was hardly any of it on the first day, or much
 /// less.
 fn deep_water(run: &Run) -> Option<Stopping> {
-    let began = run.days.first()?.release.oxygen_low_share;
+    let mut drawn = run.days.iter().filter_map(|day| Some((day.date, day.release?.oxygen_low_share)));
+    let began = drawn.next()?.1;
     let most = if began > LOW_OXYGEN_SHARE { began + LOW_OXYGEN_SHARE } else { LOW_OXYGEN_SHARE };
-    let first = run.days.iter().find(|day| day.release.oxygen_low_share > most)?;
+    let (date, share) = drawn.find(|(_, share)| *share > most)?;
     let words = format!(
         "{:.0} % of the release comes from water with less than 1 mg/L of oxygen, against {:.0} % on the first day: \
          hydrogen sulphide, iron and manganese can come with it and take up oxygen below the dam; they are not computed",
-        100.0 * first.release.oxygen_low_share,
+        100.0 * share,
         100.0 * began
     );
-    Some(Stopping { date: first.date, kind: "deep-water", words })
+    Some(Stopping { date, kind: "deep-water", words })
 }
 
 /// The first day on which the pool falls faster than the site allows, and the fastest.

@@ -82,9 +82,10 @@ pub struct SeasonDay {
     pub gates: Vec<Gate>,
     /// Levels that drew, with their zones.
     pub drawn: Vec<Drawn>,
-    /// The release, oxygen below the dam counted in.
-    pub release: Blend,
-    /// What arrives at the points of the river, in its order; `None` where the way is not known.
+    /// The release, oxygen below the dam counted in; `None` where nothing leaves the dam.
+    pub release: Option<Blend>,
+    /// What arrives at the points of the river, in its order; `None` where the way is not known, or nothing leaves the
+    /// dam.
     pub points: Option<Vec<Figures>>,
     /// The pool at its end.
     pub layers: Layers,
@@ -128,6 +129,13 @@ pub fn run(setup: &Setup, progress: Progress) -> Option<Run> {
 /// stood against it. Stopped as [`run`] is.
 pub fn passed(setup: &Setup, progress: Progress) -> Option<Run> {
     Going::new(setup)?.through_what_was(progress)
+}
+
+impl SeasonDay {
+    /// What leaves the dam, m3/s.
+    pub fn release_m3s(&self) -> f64 {
+        self.release.map_or(0.0, |release| release.flow_m3s)
+    }
 }
 
 impl Run {

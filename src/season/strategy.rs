@@ -37,7 +37,12 @@ pub(super) fn is_due(setup: &Setup, decides: NaiveDate, date: NaiveDate) -> bool
     let from = if let Choosing::Held(_, until) = &setup.choosing { *until } else { decides };
     let passed = (date - from).num_days();
     let is_turn = passed >= 0 && passed % i64::from(setup.decide_days.max(1)) == 0;
-    is_turn || schedule(&setup.choosing).is_some_and(|s| s.changes.iter().any(|change| change.0 == date))
+    is_turn || changes_on(setup, date)
+}
+
+/// Whether a schedule changes gates on a date.
+pub(super) fn changes_on(setup: &Setup, date: NaiveDate) -> bool {
+    schedule(&setup.choosing).is_some_and(|s| s.changes.iter().any(|change| change.0 == date))
 }
 
 /// What is wanted of a day on which something is decided for a reason.

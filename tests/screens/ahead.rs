@@ -161,7 +161,7 @@ fn season(context: &Context, plan: &str, case: &str, strategy: &str) -> SeasonRu
             inflow_m3s: 12.0,
             gates,
             drawn,
-            release,
+            release: Some(release),
             points: None,
             layers,
             balance: Balance::default(),

@@ -135,12 +135,12 @@ fn day(site: &Site, of: &SeasonRun, day: &SeasonDay, cold: Option<&ColdWater>, a
         pool_m: day.pool_m,
         inflow_m3s: day.inflow_m3s,
         setting: setting(site, &Setting::of(day.gates.clone())),
-        release: ReleaseJson {
-            flow_m3s: day.release.flow_m3s,
-            temperature_c: day.release.temperature_c,
-            oxygen_mg_l: day.release.oxygen_mg_l,
-            oxygen_below_mg_l: day.release.oxygen_below_mg_l,
-        },
+        release: day.release.map(|release| ReleaseJson {
+            flow_m3s: release.flow_m3s,
+            temperature_c: release.temperature_c,
+            oxygen_mg_l: release.oxygen_mg_l,
+            oxygen_below_mg_l: release.oxygen_below_mg_l,
+        }),
         points: day.points.as_ref().map(arrives),
         cold_water_m3: cold.and_then(|c| c.days.get(at)?.usable_m3),
         attainable_c: decided.and_then(|d| d.attainable_c),

@@ -68,7 +68,8 @@ pub(super) struct DayJson {
     pub(super) inflow_m3s: f64,
     #[serde(flatten)]
     pub(super) setting: SettingJson,
-    pub(super) release: ReleaseJson,
+    /// Null where nothing leaves the dam.
+    pub(super) release: Option<ReleaseJson>,
     pub(super) points: Option<Vec<PointJson>>,
     /// Usable water below the first threshold of the site.
     pub(super) cold_water_m3: Option<f64>,

@@ -71,8 +71,8 @@ impl<'a> Screen<'a> {
     /// What is looked at there: the temperature of a day, or its oxygen.
     pub(super) fn value(&self, day: &SeasonDay) -> Option<f64> {
         match (self.point(), self.session.season.oxygen) {
-            (None, false) => Some(day.release.temperature_c),
-            (None, true) => day.release.oxygen_below_mg_l,
+            (None, false) => Some(day.release?.temperature_c),
+            (None, true) => day.release?.oxygen_below_mg_l,
             (Some(p), false) => day.points.as_ref()?.get(p).map(|f| f.mean_c),
             (Some(p), true) => day.points.as_ref()?.get(p)?.oxygen_mean_mg_l,
         }

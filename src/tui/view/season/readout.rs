@@ -3,7 +3,7 @@
 use chrono::NaiveDate;
 use ratatui::layout::Rect;
 
-use crate::mix::Setting;
+use crate::mix::{Blend, Setting};
 use crate::problem::harmless;
 use crate::report::text::season::{at_place, exhausted_words, moved_words, outside_by, past};
 use crate::report::text::{setting_words, volume};
@@ -90,13 +90,11 @@ fn of_water(screen: &Screen, (i, day): (usize, &SeasonDay), out: &mut Said) {
     let pool = value(day.pool_m, Dimension::Length, 1);
     out.add_list(&format!("pool {pool}, inflow {}", flow(day.inflow_m3s)), Role::Plain);
     let oxygen = |o: Option<f64>| o.map_or_else(|| "oxygen ?".to_owned(), |o| format!("{o:.1} mg/L"));
-    let release = &day.release;
-    let words = format!(
-        "release {}: {}, {}",
-        flow(release.flow_m3s),
-        c(release.temperature_c),
-        oxygen(release.oxygen_below_mg_l)
-    );
+    let left = |release: &Blend| {
+        let (warm, oxygen) = (c(release.temperature_c), oxygen(release.oxygen_below_mg_l));
+        format!("release {}: {warm}, {oxygen}", flow(release.flow_m3s))
+    };
+    let words = day.release.as_ref().map_or_else(|| "no release".to_owned(), left);
     let comes = |look| sign(COMES.0, COMES.1, look);
     match screen.point() {
         None => out.told(comes, &words, screen.role()),
