@@ -23,7 +23,7 @@ use super::plan::PlanDay;
 use super::run::{Ended, Run, SeasonDay, Setup};
 use super::set::{Flowing, flowing};
 use super::step::day;
-use super::strategy::{Wants, changes_on, is_due, name, set_by, wants};
+use super::strategy::{Wants, changes_on, is_due, set_by, wants};
 
 /// A release this near to none is none, m3/s (choice: round-off of the volume of a large pool).
 const NOTHING_M3S: f64 = 1e-6;
@@ -84,7 +84,7 @@ impl<'a> Going<'a> {
         let run = Run {
             plan: setup.plan.name.clone(),
             case: setup.skies.case.name.clone(),
-            strategy: name(&setup.choosing).to_owned(),
+            strategy: setup.choosing.name().to_owned(),
             start: layers.clone(),
             days: Vec::new(),
             decisions: Vec::new(),
@@ -118,7 +118,14 @@ impl<'a> Going<'a> {
 
     /// Goes through the days that are left. `None` where the caller stops it.
     pub(super) fn finished(mut self, progress: Progress) -> Option<Run> {
-        while self.is_on() {
+        self.through(NaiveDate::MAX, progress)?;
+        Some(self.run)
+    }
+
+    /// Goes through the days up to a date. `None` where the caller stops it.
+    pub(super) fn through(&mut self, last: NaiveDate, progress: Progress) -> Option<()> {
+        let is_due = |next: &PlanDay| next.date <= last;
+        while self.is_on() && self.ahead.get(self.run.days.len()).is_some_and(is_due) {
             let done = self.share_done();
             if progress(done).is_break() {
                 return None;
@@ -126,7 +133,12 @@ impl<'a> Going<'a> {
             // whoever looks on is not told how far a single decision is
             self.next_day(&|_| progress(done))?;
         }
-        Some(self.run)
+        Some(())
+    }
+
+    /// The same season with other water in the pool.
+    pub(super) fn with(&self, layers: Layers) -> Self {
+        Self { layers, ..self.clone() }
     }
 
     /// Goes through days that have passed: by the schedule, else by what is set now, whatever limit stood against it.

@@ -20,6 +20,7 @@ mod inflow;
 mod layers;
 mod learn;
 mod mixing;
+mod needed;
 mod outcome;
 mod outflow;
 mod oxygen;
@@ -49,6 +50,7 @@ pub use learn::{
     WIND, learn, past,
 };
 pub use mixing::{friction_velocity_m_s, mixing_energy_j, wind_work_j_m2};
+pub use needed::{Amount, Found, Needed, Stretch, needed};
 pub use outcome::{
     Asks, ColdDay, ColdWater, Exhausted, GateLife, GateMoves, Left, Outcome, Reached, StageDate, StageFall,
     Stopping, outcome,

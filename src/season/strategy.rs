@@ -22,13 +22,15 @@ pub(super) enum Wants {
     These(Asked),
 }
 
-/// The name of what chooses the gates.
-pub(super) fn name(choosing: &Choosing) -> &'static str {
-    match choosing {
-        Choosing::By(strategy) => strategy.name(),
-        Choosing::Schedule(_) => "schedule",
-        Choosing::Aims(_) | Choosing::Found(_) => Strategy::Thrift.name(),
-        Choosing::Held(..) => "held",
+impl Choosing {
+    /// Its name.
+    pub fn name(&self) -> &'static str {
+        match self {
+            Self::By(strategy) => strategy.name(),
+            Self::Schedule(_) => "schedule",
+            Self::Aims(_) | Self::Found(_) => Strategy::Thrift.name(),
+            Self::Held(..) => "held",
+        }
     }
 }
 

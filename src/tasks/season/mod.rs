@@ -2,6 +2,7 @@
 
 mod asked;
 mod learn;
+mod needed;
 mod notes;
 mod price;
 mod table;
@@ -18,6 +19,7 @@ use super::{Context, Failure};
 
 pub use asked::SeasonAsked;
 pub use learn::{Dated, LearnAnswer, LearnAsked, learn};
+pub use needed::{CaseNeeded, NeededAnswer, needed};
 pub use price::{Prices, prices};
 
 /// One season of the answer.
