@@ -34,6 +34,9 @@ impl Criterion {
         ("moves", Self::Moves),
     ];
 
+    /// The usual order.
+    pub const USUAL: [Self; 5] = [Self::Oxygen, Self::Range, Self::Preferred, Self::ColdWater, Self::Moves];
+
     /// The name used on the command line.
     pub fn name(self) -> &'static str {
         Self::NAMES.iter().find(|(_, c)| *c == self).map_or("", |(n, _)| n)

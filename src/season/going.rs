@@ -325,6 +325,7 @@ impl<'a> Going<'a> {
             now: now.or_else(|| self.asked.as_ref().is_some_and(is_shut).then_some(&shut)),
             // the change of the flow is the plan's
             before: Before { flow_m3s: Some(morning.release_m3s), temperature_c: self.last_c },
+            order: self.setup.order,
         };
         ask(&choice)
     }

@@ -9,7 +9,7 @@ use chrono::NaiveDate;
 use crate::mix::limits::Check;
 use crate::mix::{Asked, Blend, Drawn, Gate, Setting};
 use crate::profile::Profile;
-use crate::rank::Progress;
+use crate::rank::{Criterion, Progress};
 use crate::river::Figures;
 use crate::site::Strategy;
 
@@ -56,6 +56,8 @@ pub struct Setup<'a> {
     pub choosing: Choosing,
     /// Days between decisions.
     pub decide_days: u32,
+    /// What counts first where the mix of a day is chosen.
+    pub order: &'a [Criterion],
 }
 
 /// Why a season ended before its plan.

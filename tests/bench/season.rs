@@ -85,6 +85,7 @@ impl Bench {
             skies,
             choosing: Choosing::By(strategy),
             decide_days: EVERY,
+            order: &gatemix::rank::Criterion::USUAL,
         }
     }
 

@@ -84,6 +84,7 @@ fn scenario_a_mix_inside_a_season_is_near_that_of_the_full_ranking() {
                 skies: &skies,
                 choosing: Choosing::By(Strategy::Best),
                 decide_days: 7,
+                order: &gatemix::rank::Criterion::USUAL,
             };
             let run = run(&setup, &|_| ControlFlow::Continue(())).unwrap();
             let (Some(full), Some(inside)) = (ranking.mixes.first(), run.days.first()) else {

@@ -141,6 +141,7 @@ fn of(site: &Site, days: Vec<SeasonDay>, decisions: Vec<Decision>, outages: Vec<
         skies: &skies,
         choosing: Choosing::By(Strategy::Best),
         decide_days: 7,
+        order: &gatemix::rank::Criterion::USUAL,
     };
     let run = Run {
         plan: "p".into(),

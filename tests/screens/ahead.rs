@@ -92,6 +92,7 @@ fn invented(question: SeasonQuestion) -> Ahead {
         begins,
         decides: begins,
         decide_days: 7,
+        order: gatemix::rank::Criterion::USUAL.to_vec(),
         notes: Vec::new(),
         fingerprint: context.fingerprint.clone(),
     };
@@ -217,6 +218,7 @@ fn season(context: &Context, plan: &str, case: &str, strategy: &str) -> SeasonRu
             skies: &skies,
             choosing: Choosing::By(Strategy::Best),
             decide_days: 7,
+            order: &gatemix::rank::Criterion::USUAL,
         };
         outcome(&setup, &run)
     };

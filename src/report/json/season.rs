@@ -30,6 +30,7 @@ pub fn season(context: &Context, answer: &SeasonAnswer) -> String {
         begins: answer.begins.to_string(),
         decides: answer.decides.to_string(),
         decide_days: answer.decide_days,
+        order: answer.order.iter().map(|criterion| criterion.name()).collect(),
         run: spoken,
         runs: answer.others.iter().map(|r| run(site, answer, r)).collect(),
         warnings: warnings(&answer.notes),

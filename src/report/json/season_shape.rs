@@ -11,6 +11,7 @@ pub(super) struct SeasonJson {
     pub(super) begins: String,
     pub(super) decides: String,
     pub(super) decide_days: u32,
+    pub(super) order: Vec<&'static str>,
     #[serde(flatten)]
     pub(super) run: RunJson,
     pub(super) runs: Vec<RunJson>,

@@ -15,6 +15,7 @@ use chrono::NaiveDate;
 use unicode_width::UnicodeWidthStr;
 
 use crate::problem::{Problem, Weight, harmless};
+use crate::rank::Criterion;
 use crate::report::flags_of;
 use crate::season::{Exhausted, Run};
 use crate::tasks::Context;
@@ -110,8 +111,14 @@ fn gates_chosen(context: &Context, answer: &SeasonAnswer) -> String {
     } else {
         ""
     };
+    let order = if answer.order == Criterion::USUAL {
+        String::new()
+    } else {
+        let by: Vec<&str> = answer.order.iter().map(|criterion| criterion.name()).collect();
+        format!(", ordered by {}", by.join(", "))
+    };
     format!(
-        "{held}{}, decided every {}{solved}",
+        "{held}{}, decided every {}{order}{solved}",
         harmless(&strategy_words(&answer.main.run)),
         super::days(f64::from(answer.decide_days))
     )
