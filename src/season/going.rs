@@ -84,7 +84,7 @@ impl<'a> Going<'a> {
         let run = Run {
             plan: setup.plan.name.clone(),
             case: setup.skies.case.name.clone(),
-            strategy: setup.choosing.name().to_owned(),
+            strategy: setup.choosing.name(),
             start: layers.clone(),
             days: Vec::new(),
             decisions: Vec::new(),

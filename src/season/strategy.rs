@@ -24,12 +24,12 @@ pub(super) enum Wants {
 
 impl Choosing {
     /// Its name.
-    pub fn name(&self) -> &'static str {
+    pub fn name(&self) -> String {
         match self {
-            Self::By(strategy) => strategy.name(),
-            Self::Schedule(_) => "schedule",
-            Self::Aims(_) | Self::Found(_) => Strategy::Thrift.name(),
-            Self::Held(..) => "held",
+            Self::By(strategy) => strategy.name().to_owned(),
+            Self::Schedule(of) => Schedule::called(&of.file),
+            Self::Aims(_) | Self::Found(_) => Strategy::Thrift.name().to_owned(),
+            Self::Held(..) => "held".to_owned(),
         }
     }
 }

@@ -72,6 +72,8 @@ pub struct SeasonAnswer {
     pub decide_days: u32,
     /// What counts first where the mix of a day is chosen.
     pub order: Vec<Criterion>,
+    /// Files of the gate schedules of the folder.
+    pub schedules: Vec<String>,
     /// Plans that were refused, and what was assumed.
     pub notes: Vec<Problem>,
     /// Fingerprint of the inputs, plans and all.
@@ -134,6 +136,7 @@ pub fn season(
         decides: if now.is_some() { understood.decides } else { understood.begins },
         decide_days: understood.decide_days,
         order: understood.order.clone(),
+        schedules: context.folder.schedules(),
         notes,
         fingerprint: understood.fingerprint.clone(),
     })

@@ -130,7 +130,7 @@ pub fn strategy_words(run: &Run) -> String {
         "hold" => "the setting is held as long as no limit stands against it".to_owned(),
         "best" => "the best mix of the day".to_owned(),
         "thrift" => "release targets that spare cold water".to_owned(),
-        other => format!("gates as {other} says"),
+        other => format!("gates as the {other} says"),
     }
 }
 

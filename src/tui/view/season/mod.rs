@@ -11,6 +11,7 @@
 
 mod beside;
 mod calendar;
+mod left;
 mod picture;
 mod readout;
 

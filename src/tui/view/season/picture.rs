@@ -49,10 +49,7 @@ impl<'a> Screen<'a> {
 
     /// The day read, from 0.
     pub(super) fn day(&self) -> Option<usize> {
-        let days = &self.shown.run.run.days;
-        let last = days.len().checked_sub(1)?;
-        let of = |day: NaiveDate| days.iter().position(|d| d.date >= day).unwrap_or(last);
-        Some(self.session.season.day.map_or(0, of))
+        self.session.day_read()
     }
 
     /// The point looked at; `None` for the dam.

@@ -15,8 +15,8 @@ use crate::units::{Dimension, System, figure, in_system, show};
 
 use super::super::scroll::{Lines, say};
 use super::super::write::at_commas;
-use super::Screen;
 use super::picture::{ASKED, COMES, USABLE, days_by};
+use super::{Screen, left};
 
 /// Columns from which a date has its day of the week (choice: with it and three digits each it still has one row).
 const FULL: usize = 32;
@@ -63,6 +63,7 @@ pub(super) fn lines(screen: &Screen, width: usize, pictures: Option<(Rect, Look)
     match screen.day().and_then(|i| Some((i, days.get(i)?))) {
         Some((i, day)) => {
             of_water(screen, (i, day), &mut out);
+            left::lines(screen, day.date).iter().for_each(|(words, role)| out.add_list(words, *role));
             of_gates(screen, day, &mut out);
         }
         None => out.add("the season has no day", Role::Outside),
@@ -279,6 +280,6 @@ fn days_outside(told: &TargetTally) -> String {
 }
 
 /// `1 day`, `3 days`.
-fn plural(count: u64, word: &str) -> String {
+pub(super) fn plural(count: u64, word: &str) -> String {
     if count == 1 { format!("1 {word}") } else { format!("{count} {word}s") }
 }
