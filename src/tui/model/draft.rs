@@ -44,9 +44,8 @@ impl Draft {
 
     /// The order of the criteria in words, where it is not the usual one.
     pub fn order_words(&self) -> Option<String> {
-        let names = |order: &[Criterion]| order.iter().map(|c| c.name()).collect::<Vec<_>>().join(",");
-        let usual = Criterion::NAMES.map(|c| c.1);
-        (self.order != usual).then(|| names(&self.order))
+        let names = || self.order.iter().map(|c| c.name()).collect::<Vec<_>>().join(",");
+        (self.order != Criterion::USUAL).then(names)
     }
 
     /// Whether another asks for the same seasons.

@@ -142,7 +142,7 @@ fn turn(model: &mut Model, page: SeasonPage) {
 
 /// What is chosen among names: what it is called, the names there are, the one shown, the one chosen, and how another is
 /// chosen.
-struct Choice {
+struct Selection {
     what: &'static str,
     names: fn(&SeasonShown) -> Vec<String>,
     shown: fn(&SeasonShown) -> String,
@@ -150,21 +150,21 @@ struct Choice {
     choose: fn(&mut SeasonAsked, String, &SeasonShown),
 }
 
-const CASE: Choice = Choice {
+const CASE: Selection = Selection {
     what: "case",
     names: cases,
     shown: case_of,
     chosen: |asked| asked.case.clone(),
     choose: |asked, name, _| asked.case = Some(name),
 };
-const PLAN: Choice = Choice {
+const PLAN: Selection = Selection {
     what: "plan",
     names: plans,
     shown: plan_of,
     chosen: |asked| asked.plan.clone(),
     choose: |asked, name, _| asked.plan = Some(name),
 };
-const STRATEGY: Choice = Choice {
+const STRATEGY: Selection = Selection {
     what: "strategy",
     names: strategies,
     shown: strategy_of,
@@ -173,16 +173,16 @@ const STRATEGY: Choice = Choice {
 };
 
 /// Chooses the next of some names, and asks where that season is not known yet.
-fn choose(model: &mut Model, choice: &Choice) -> Vec<Effect> {
-    let what = choice.what;
+fn choose(model: &mut Model, of: &Selection) -> Vec<Effect> {
+    let what = of.what;
     let next = model.session().and_then(|session| {
         let shown = session.season_shown()?;
-        let names = (choice.names)(&shown);
+        let names = (of.names)(&shown);
         let mut chosen = session.season.chosen.clone();
-        let here = (choice.chosen)(&chosen).unwrap_or_else(|| (choice.shown)(&shown));
+        let here = (of.chosen)(&chosen).unwrap_or_else(|| (of.shown)(&shown));
         let at = names.iter().position(|n| *n == here).map_or(0, |i| i + 1);
         let next = names.get(at % names.len().max(1)).filter(|n| **n != here)?;
-        (choice.choose)(&mut chosen, next.clone(), &shown);
+        (of.choose)(&mut chosen, next.clone(), &shown);
         Some((next.clone(), chosen))
     });
     let Some((next, chosen)) = next else {

@@ -193,7 +193,7 @@ fn limits(picture: &SeasonPicture, col: usize, marks: &Marks, cells: &mut Cells)
 }
 
 /// Stretches with those that overlap made one, from the lowest.
-fn joined(mut zones: Vec<[f64; 2]>) -> Vec<[f64; 2]> {
+pub(super) fn joined(mut zones: Vec<[f64; 2]>) -> Vec<[f64; 2]> {
     zones.sort_by(|a, b| a[0].total_cmp(&b[0]));
     let mut out: Vec<[f64; 2]> = Vec::new();
     for [low, high] in zones {

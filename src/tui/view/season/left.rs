@@ -6,6 +6,7 @@ use crate::problem::harmless;
 use crate::report::text::volume;
 use crate::tasks::season::CaseNeeded;
 use crate::tui::look::Role;
+use crate::tui::model::SeasonQuestion;
 use crate::units::System;
 
 use super::Screen;
@@ -15,12 +16,14 @@ use super::readout::plural;
 pub(super) fn lines(screen: &Screen, date: NaiveDate) -> Vec<(String, Role)> {
     let on = date.format("%m-%d");
     if let Some(left) = screen.session.left_on(date) {
-        let head = (format!("needed on {on} for the days after it:"), Role::Cold);
+        let head = (format!("needed on {on} for later days:"), Role::Cold);
         let cases = left.answer.cases.iter().map(|case| told(case, screen.model.system()));
         return std::iter::once(head).chain(cases).collect();
     }
-    let asked = screen.session.left_asked.as_ref().filter(|asked| asked.1 == date);
-    let under = screen.model.needed.as_ref().filter(|_| asked.is_some());
+    let question = screen.session.season_question();
+    let asked = |(of, on): &(SeasonQuestion, NaiveDate)| of.is(&question) && *on == date;
+    let asked = screen.session.left_asked.as_ref().is_some_and(asked);
+    let under = screen.model.needed.as_ref().filter(|_| asked);
     under.map_or_else(Vec::new, |under| {
         vec![(format!("needed on {on}: sought, {:.0} %, Esc stops", 100.0 * under.done), Role::Warn)]
     })
