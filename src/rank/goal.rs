@@ -35,7 +35,10 @@ impl Criterion {
     ];
 
     /// The usual order.
-    pub const USUAL: [Self; 5] = [Self::Oxygen, Self::Range, Self::Preferred, Self::ColdWater, Self::Moves];
+    pub const USUAL: [Self; 5] = {
+        let [oxygen, range, preferred, cold_water, moves] = Self::NAMES;
+        [oxygen.1, range.1, preferred.1, cold_water.1, moves.1]
+    };
 
     /// The name used on the command line.
     pub fn name(self) -> &'static str {

@@ -401,3 +401,52 @@ fn scenario_what_to_beware_of() {
     }
     assert!(of(&site, all, Vec::new(), Vec::new()).warnings.is_empty());
 }
+
+#[test]
+fn scenario_a_stage_that_falls_faster_than_allowed_is_told() {
+    let limited = |most: &str| checked(&SITE.replace("[100, 2]]", &format!("[100, 2]], {most}")));
+    let figures = |flow_m3s: f64| Figures {
+        mean_c: 10.0,
+        range_c: None,
+        hourly_change_c: None,
+        oxygen_mean_mg_l: None,
+        oxygen_min_mg_l: None,
+        oxygen_share: None,
+        flow_m3s,
+    };
+    let mut season = days(5);
+    // a change is made in two hours and 50 m3/s are a metre of stage: 0.2, 0, 0.1 and 0.1 m an hour
+    for (day, flow) in season.iter_mut().zip([60.0, 40.0, 40.0, 30.0, 20.0]) {
+        day.points = Some(vec![figures(flow)]);
+    }
+    let told = |site: &Site| -> Vec<(&'static str, NaiveDate, String)> {
+        let out = of(site, season.clone(), Vec::new(), Vec::new());
+        out.warnings.into_iter().map(|w| (w.kind, w.date, w.words)).collect()
+    };
+    let over = told(&limited("max_stage_fall_per_hour: 0.15"));
+    assert_eq!((over.len(), over[0].0, over[0].1), (1, "max_stage_fall_per_hour", date("2026-08-02")));
+    assert!(over[0].2.starts_with("the stage at Ford can fall by more than"), "{}", over[0].2);
+    assert!(over[0].2.contains("on 1 of 5 days"), "{}", over[0].2);
+    assert!(told(&limited("max_stage_fall_per_hour: 5 cm"))[0].2.contains("on 3 of 5 days"));
+    assert!(told(&limited("max_stage_fall_per_hour: 0.2")).is_empty(), "just at the limit");
+    assert!(told(&checked(SITE)).is_empty());
+}
+
+#[test]
+fn scenario_an_outage_is_told_by_its_dates() {
+    let site = checked(SITE);
+    let outage = |to: Option<NaiveDate>, reason: &str| {
+        vec![Outage { outlet: 2, from: begin(), to, reason: reason.into() }]
+    };
+    let why = |outages: Vec<Outage>| {
+        let out = of(&site, days(6), Vec::new(), outages);
+        let low = out.gates.into_iter().find(|g| g.outlet == 2).unwrap();
+        (low.first_day, low.reason.unwrap().1)
+    };
+    let until = Some(date("2026-08-03"));
+    assert_eq!(
+        why(outage(until, "hoists renewed")),
+        (Some(date("2026-08-04")), "outage until 2026-08-03, hoists renewed".to_owned())
+    );
+    assert_eq!(why(outage(None, "")), (None, "outage with no end told".to_owned()));
+}

@@ -234,9 +234,11 @@ fn stage(site: &Site, of: &StageDate) -> Option<StageJson> {
 }
 
 fn stage_fall(site: &Site, of: &StageFall) -> Option<StageFallJson> {
+    let point = site.river.as_ref()?.points.get(of.point)?;
     Some(StageFallJson {
-        point: site.river.as_ref()?.points.get(of.point)?.name.clone(),
+        point: point.name.clone(),
         fall_m_per_hour: of.m_per_hour,
+        allowed_m_per_hour: point.stage_fall_m_per_hour,
         on: of.date.to_string(),
     })
 }

@@ -193,6 +193,8 @@ pub(super) struct StageJson {
 pub(super) struct StageFallJson {
     pub(super) point: String,
     pub(super) fall_m_per_hour: f64,
+    /// Most that is allowed; null where no limit is given.
+    pub(super) allowed_m_per_hour: Option<f64>,
     pub(super) on: String,
 }
 

@@ -112,12 +112,13 @@ pub(super) fn nearer(main: &SeasonRun, others: &[SeasonRun], order: &[Criterion]
         let (than, beside) = (&other.outcome.score, &other.run.strategy);
         let fewer = score.days_outside.saturating_sub(than.days_outside);
         let milder_c = score.worst_c - than.worst_c;
-        let days = (fewer > 0).then(|| match fewer {
-            1 => "1 day outside fewer".to_owned(),
-            more => format!("{more} days outside fewer"),
+        let days = (fewer > 0).then(|| {
+            let days = if fewer == 1 { "day" } else { "days" };
+            format!("{fewer} fewer {days} outside the hard targets")
         });
         let [worst, here] = [than.worst_c, score.worst_c].map(|c| say::dc(c, 1));
-        let worst = (milder_c >= SEEN_C).then(|| format!("a worst miss of {worst} against {here}"));
+        let worst =
+            (milder_c >= SEEN_C).then(|| format!("a worst miss of their ranges of {worst} against {here}"));
         let gains: Vec<String> = [days, worst].into_iter().flatten().collect();
         if gains.is_empty() || than.lost != score.lost {
             return None;
@@ -130,7 +131,7 @@ pub(super) fn nearer(main: &SeasonRun, others: &[SeasonRun], order: &[Criterion]
         });
         let names: Vec<&str> = order.iter().map(|criterion| criterion.name()).collect();
         let words = format!(
-            "`{beside}` has {} in the hard targets: a mix of `{name}` is chosen for its day, in the order {}{oxygen}",
+            "`{beside}` has {}: each mix of `{name}` is chosen for its day, in the order {}{oxygen}",
             gains.join(" and "),
             names.join(", ")
         );

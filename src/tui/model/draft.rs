@@ -33,7 +33,7 @@ impl Draft {
         Self {
             changed: Changed::default(),
             release_m3s: None,
-            order: Criterion::NAMES.map(|c| c.1).to_vec(),
+            order: Criterion::USUAL.to_vec(),
             every: None,
             without: Vec::new(),
             tries: vec![now],

@@ -13,8 +13,8 @@ use super::super::{fitted, wrapped};
 use super::short;
 
 /// Columns of the names together, and of each figure.
-const NAME: usize = 32;
-const CELLS: [usize; 6] = [8, 8, 9, 6, 7, 6];
+const NAME: usize = 34;
+const CELLS: [usize; 6] = [8, 8, 8, 6, 7, 6];
 
 /// What follows a plan that is cut.
 const CUT: &str = "..";
@@ -180,4 +180,26 @@ pub fn meaning(rows: &[Row], system: System) -> String {
         out.push_str("; ?: a hard rule is not judged on any day");
     }
     out
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn law_a_plan_too_long_for_its_column_is_cut_after_a_word() {
+        let of = |plan: &str| {
+            let name = named(&[plan, "middling", "thrift"].map(str::to_owned));
+            assert!(name.width() < NAME && name.ends_with(", middling, thrift"), "{name}");
+            name
+        };
+        assert_eq!(of("planned"), "planned, middling, thrift");
+        assert_eq!(of("as in 3 of years"), "as in 3 of.., middling, thrift");
+        assert_eq!(of("as in other years"), "as in other.., middling, thrift");
+        assert_eq!(of("hydroelectric-maximum"), "hydroelectric.., middling, thrift");
+        assert!(
+            named(&["a", "a case with a name of its own and more", "best"].map(str::to_owned))
+                .starts_with("a")
+        );
+    }
 }
