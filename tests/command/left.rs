@@ -15,6 +15,11 @@ fn left(folder: &str, more: &[&str]) -> Run {
     run(&[&["season", folder, "--on", ON, "--left"], more].concat())
 }
 
+/// The text of an answer as one line.
+fn unwrapped(run: &Run) -> String {
+    run.out.split_whitespace().collect::<Vec<_>>().join(" ")
+}
+
 /// What every case of an answer keeps, whatever its figures.
 fn is_sound(answer: &Value) {
     for case in list(&answer["needed"]["cases"]) {
@@ -92,7 +97,7 @@ fn scenario_days_that_no_amount_cures_are_told_by_name_and_date() {
     let rows: Vec<&Value> = list(&case["remain"]).iter().filter(|row| row["target"] == "holding").collect();
     assert_eq!(rows.len(), 1, "{case}");
     assert_eq!((&rows[0]["side"], &rows[0]["days"]), (&"below".into(), &6.into()));
-    let told = left(folder.named(), &["2025-08-20"]).out.split_whitespace().collect::<Vec<_>>().join(" ");
+    let told = unwrapped(&left(folder.named(), &["2025-08-20"]));
     assert!(told.contains("holding at dam below 08-21 to 08-26"), "{told}");
     assert!(told.contains("outside remain however much is left"), "{told}");
 }
@@ -157,6 +162,6 @@ fn scenario_where_no_cold_water_is_left_and_none_is_needed_that_is_told() {
     }
     // nor less than all of it, where all of it is that cold
     fs::write(folder.site_file(), with(&text, "cold_water: [4]", "cold_water: [30]")).unwrap();
-    let told = left(folder.named(), &["2025-08-20"]).out;
+    let told = unwrapped(&left(folder.named(), &["2025-08-20"]));
     assert!(told.contains("all water of the pool is that cold on 2025-08-20"), "{told}");
 }
