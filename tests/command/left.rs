@@ -130,9 +130,6 @@ fn demonstrated(site: &str, date: &str) {
     let answer = run(&["season", site, "--left", date, "--every", "70", "--json"]).json();
     is_sound(&answer);
     let cases = list(&answer["needed"]["cases"]);
-    for case in cases {
-        println!("{site} {date} {}: left {}, needed {}", case["case"], case["left"], case["needed"]);
-    }
     assert!(cases.len() == 3 && cases.iter().all(|case| case["needed"].is_object()));
     assert!(cases.iter().any(|case| number(&case["to_spare_m3"]) < 0.0));
 }

@@ -129,9 +129,6 @@ fn law_what_is_needed_is_enough_and_less_is_not() {
     let setup = tiny.setup(&skies, Choosing::By(Strategy::Best));
     let Needed { made, found, not_judged, .. } = needed(&setup, date, &go_on).unwrap();
     let (made, found) = (made.unwrap(), found.unwrap());
-    for one in &found.tried {
-        println!("{:.0} m3: {} days", one.total_m3, one.days_outside);
-    }
     assert!(made.days_outside > 0, "the season as it is has too little: {made:?}");
     assert!(found.least.is_enough() && found.remain.is_empty() && not_judged.is_empty(), "{found:?}");
     assert!(found.least.usable_m3 > made.usable_m3, "{found:?}");
