@@ -1,4 +1,5 @@
-//! The cold water of a season by date: all of it, what the outlets usable on that date can draw, and the reserves.
+//! The cold water of a season by date: all of it, what the outlets usable on that date can draw, the reserves; and a pool
+//! with more or less of it.
 //!
 //! Methods: `docs/methods.md`, section 8.
 

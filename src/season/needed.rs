@@ -140,6 +140,10 @@ pub fn needed(setup: &Setup, date: NaiveDate, progress: Progress) -> Option<Need
     let amount = made.amount;
     let found = match search.range_m3() {
         Ok(range) => Ok(search.found(made, range)?),
+        // there is none, and none is needed
+        Err(_) if amount.is_enough() && amount.usable_m3.is_some_and(|m3| m3 <= 0.0) => {
+            Ok(Found { least: amount, lower: None, remain: made.remain, tried: vec![amount] })
+        }
         Err(why) => Err(why),
     };
     Some(Needed { date, threshold_c, made: Some(amount), found, not_judged })

@@ -141,7 +141,8 @@ fn date_of(context: &Context, of: &Understood, typed: Option<&str>) -> Result<Na
         .parse()
         .map_err(|_| Failure::Usage(format!("--left {text}: give a date such as {}", of.begins)))?;
     if date < of.begins || date >= last {
-        let words = format!("no day of the season, {} to {last}, comes after {date} in it", of.begins);
+        let words =
+            format!("{date} is no day of the season, {} to {last}, with days to come after it", of.begins);
         return Err(refused(words));
     }
     Ok(date)

@@ -11,11 +11,11 @@ use super::super::{labelled, list, temperature, volume};
 use super::first::days;
 use super::{at_place, section, short};
 
-/// Columns of a case, of an amount with its days, and of the difference.
+/// Columns of a case, of an amount with its days, and of the difference; a space stands before each but the first.
 const NAME: usize = 11;
 const AMOUNT: usize = 15;
-const DAYS: usize = 6;
-const APART: usize = 23;
+const DAYS: usize = 5;
+const APART: usize = 21;
 
 /// Everything but head and caution.
 pub(in crate::report::text) fn body(context: &Context, answer: &NeededAnswer) -> String {
@@ -50,10 +50,15 @@ fn asked(answer: &NeededAnswer) -> String {
 
 /// A table of the cases, then what is to be known of each, a line each.
 pub fn needed(context: &Context, answer: &NeededAnswer, system: System) -> Vec<String> {
-    let mut out = vec![row(["case", "left", "out", "needed", "out", ""])];
+    let mut out = vec![row(["case", "left", "days", "needed", "days", ""])];
     out.extend(answer.cases.iter().map(|case| cells(case, system)));
-    out.push("out: days outside from then on, in the season as it is and with what is needed".to_owned());
+    out.push("days: outside from then on, as the season is and with what is needed".to_owned());
     out.extend(answer.cases.iter().flat_map(|case| told(context, case, system)));
+    let amounts =
+        answer.cases.iter().filter_map(|case| case.needed.found.as_ref().ok()).flat_map(|found| &found.tried);
+    if amounts.into_iter().any(|one| one.lost > 0) {
+        out.push("!: the season stops before its end, and days after it are not counted".to_owned());
+    }
     if answer.cases.iter().any(|case| case.foresight) {
         out.push(
             "*: solved with that very case in view, no evidence, so unseen cases stand first".to_owned(),
@@ -65,7 +70,7 @@ pub fn needed(context: &Context, answer: &NeededAnswer, system: System) -> Vec<S
 fn row([case, left, outside, needed, remain, apart]: [&str; 6]) -> String {
     let case = super::super::fitted(case, NAME);
     let row = format!(
-        "{case:<NAME$}{left:>AMOUNT$}{outside:>DAYS$}{needed:>AMOUNT$}{remain:>DAYS$}{apart:>APART$}"
+        "{case:<NAME$} {left:>AMOUNT$} {outside:>DAYS$} {needed:>AMOUNT$} {remain:>DAYS$} {apart:>APART$}"
     );
     row.trim_end().to_owned()
 }
@@ -73,10 +78,6 @@ fn row([case, left, outside, needed, remain, apart]: [&str; 6]) -> String {
 fn cells(of: &CaseNeeded, system: System) -> String {
     let usable = |amount: &Amount| {
         amount.usable_m3.map_or_else(|| "nothing usable".to_owned(), |m3| volume(m3, system))
-    };
-    let outside = |amount: &Amount| {
-        let stops = if amount.lost > 0 { "!" } else { "" };
-        format!("{} d{stops}", amount.days_outside)
     };
     let blank = || "-".to_owned();
     let made = of.needed.made.as_ref();
@@ -92,6 +93,11 @@ fn cells(of: &CaseNeeded, system: System) -> String {
     ])
 }
 
+/// Days outside, marked where the season stops before its end.
+fn outside(of: &Amount) -> String {
+    format!("{} d{}", of.days_outside, if of.lost > 0 { "!" } else { "" })
+}
+
 /// `short 2.90 hm3`, `spare 2.90 hm3`
 fn apart(to_spare_m3: f64, system: System) -> String {
     let word = if to_spare_m3 < 0.0 { "short" } else { "spare" };
@@ -105,7 +111,7 @@ fn told(context: &Context, of: &CaseNeeded, system: System) -> Vec<String> {
     match &of.needed.found {
         Err(why) => out.push(format!("{case}: what is needed cannot be told: {why}")),
         Ok(found) => {
-            out.extend(found_words(context, found, system).into_iter().map(|w| format!("{case}: {w}")))
+            out.extend(found_words(context, found, system).into_iter().map(|w| format!("{case}: {w}")));
         }
     }
     let unjudged = of.needed.not_judged.iter().filter_map(|&at| context.site().targets.get(at));
@@ -129,17 +135,18 @@ fn found_words(context: &Context, found: &Found, system: System) -> Vec<String> 
             String::new()
         };
         out.push(format!(
-            "{} outside remain whatever is left of the {} amounts tried{most}: {}{stops}",
+            "{} outside remain however much is left, of {} amounts tried{most}: {}{stops}",
             days(least.days_outside),
             found.tried.len(),
             if remain.is_empty() { "none of those reached".to_owned() } else { remain.join("; ") }
         ));
     }
-    if let Some(lower) = &found.lower {
-        let usable = lower.usable_m3.map_or_else(|| "less".to_owned(), |m3| volume(m3, system));
-        let stops = if lower.lost > least.lost { " and a season that stops before" } else { "" };
-        out.push(format!("with {usable}, the next less tried, {} outside{stops}", days(lower.days_outside)));
-    }
+    let tried: Vec<String> = found
+        .tried
+        .iter()
+        .filter_map(|one| Some(format!("{} {}", volume(one.usable_m3?, system), outside(one))))
+        .collect();
+    out.push(format!("tried {}", tried.join(", ")));
     if least.oxygen_days > 0 {
         out.push(format!(
             "by oxygen {} outside with what is needed: that is not counted, since cold water does not cure it",
