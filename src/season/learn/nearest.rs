@@ -56,7 +56,7 @@ pub(super) fn nearest(knobs: &[Knob], before: Knobs, far: Far) -> Option<Nearest
     let mut untold = Vec::new();
     let mut from = before;
     loop {
-        let Some(best) = sought(&free, from, ROUNDS, far)? else {
+        let Some(best) = sought(&free, from, ROUNDS, 0.0, far)? else {
             return Some(Nearest { knobs: before, near: Vec::new(), untold });
         };
         from = put(&free, from, &best.at);
@@ -64,7 +64,7 @@ pub(super) fn nearest(knobs: &[Knob], before: Knobs, far: Far) -> Option<Nearest
         let mut ends = Vec::new();
         for i in 0..free.len() {
             let [low, high] = free[i].range;
-            ends.push([held(&free, i, low, from, far)?, held(&free, i, high, from, far)?]);
+            ends.push([held(&free, i, low, from, most, far)?, held(&free, i, high, from, most, far)?]);
         }
         let flat = ends.iter().enumerate().map(|(i, ends)| (i, ends[0].max(ends[1])));
         let flattest = flat.filter(|flat| flat.1 <= most).min_by(|a, b| a.1.total_cmp(&b.1));
@@ -87,11 +87,11 @@ pub(super) fn nearest(knobs: &[Knob], before: Knobs, far: Far) -> Option<Nearest
     }
 }
 
-/// What is missed with one knob held, the others following.
-fn held(free: &[&Knob], i: usize, value: f64, mut from: Knobs, far: Far) -> Option<f64> {
+/// What is missed with one knob held, the others following until no more than `enough` is.
+fn held(free: &[&Knob], i: usize, value: f64, mut from: Knobs, enough: f64, far: Far) -> Option<f64> {
     *(free[i].of)(&mut from) = value;
     let others: Vec<&Knob> = free.iter().filter(|other| other.name != free[i].name).copied().collect();
-    Some(sought(&others, from, FOLLOWING, far)?.map_or(f64::INFINITY, |place| place.misses))
+    Some(sought(&others, from, FOLLOWING, enough, far)?.map_or(f64::INFINITY, |place| place.misses))
 }
 
 /// The value of a knob on the way to an end up to which no more than `most` is missed.
@@ -99,7 +99,7 @@ fn as_near_to(free: &[&Knob], i: usize, end: f64, most: f64, mut from: Knobs, fa
     let (mut near, mut end) = ((free[i].of)(&mut from).ln(), end.ln());
     for _ in 0..HALVINGS {
         let middle = f64::midpoint(near, end);
-        if held(free, i, middle.exp(), from, far)? <= most {
+        if held(free, i, middle.exp(), from, most, far)? <= most {
             near = middle;
         } else {
             end = middle;
@@ -116,8 +116,9 @@ fn put(some: &[&Knob], mut knobs: Knobs, at: &[f64]) -> Knobs {
 }
 
 /// The place from which no step leads nearer, by damped least squares (Levenberg 1944, Marquardt 1963) on the logarithms
-/// of the knobs inside their ranges. No place where the pool cannot go from the start; `None` where `far` stops it.
-fn sought(some: &[&Knob], from: Knobs, rounds: usize, far: Far) -> Option<Option<Place>> {
+/// of the knobs inside their ranges, or that misses no more than `enough`. No place where the pool cannot go from the
+/// start; `None` where `far` stops it.
+fn sought(some: &[&Knob], from: Knobs, rounds: usize, enough: f64, far: Far) -> Option<Option<Place>> {
     let ends: Vec<[f64; 2]> = some.iter().map(|knob| knob.range.map(f64::ln)).collect();
     let mut place = |at: Vec<f64>| -> Option<Option<Place>> {
         let off = far(put(some, from, &at))?;
@@ -127,7 +128,10 @@ fn sought(some: &[&Knob], from: Knobs, rounds: usize, far: Far) -> Option<Option
     let start = some.iter().zip(&ends).map(|(knob, e)| (knob.of)(&mut was).ln().clamp(e[0], e[1])).collect();
     let Some(mut best) = place(start)? else { return Some(None) };
     let (mut damping, [mut look, least_look]) = (0.01, LOOKS);
-    for _ in 0..if some.is_empty() { 0 } else { rounds } {
+    for _ in 0..rounds {
+        if some.is_empty() || best.misses <= enough {
+            break;
+        }
         let mut slopes = Vec::new();
         for (i, [least, most]) in ends.iter().enumerate() {
             let by = if best.at[i] + look > *most { -look.min(best.at[i] - least) } else { look };

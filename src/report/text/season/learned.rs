@@ -35,7 +35,7 @@ pub(in crate::report::text) fn body(context: &Context, answer: &LearnAnswer) -> 
     out.push_str(&labelled("Fitted", &fitted));
     let tested = format!("the pool computed on to {}, not used: {}", third.date, off(learned.tested, system));
     out.push_str(&labelled("Tested", &tested));
-    out.push_str("\nWhat nobody measures        before    after   about as near    published range\n");
+    out.push_str("\nWhat nobody measures         before    after   about as near    published range\n");
     for fit in learned.each() {
         out.push_str(&row(&fit));
     }
