@@ -141,7 +141,8 @@ impl<'a> Going<'a> {
         Self { layers, ..self.clone() }
     }
 
-    /// Goes through days that have passed: by the schedule, else by what is set now, whatever limit stood against it.
+    /// Goes through days that have passed: by the schedule, its flows as they are told, also those of a well; else by what
+    /// is set now. Whatever limit stood against it.
     pub(super) fn through_what_was(mut self, progress: Progress) -> Option<Run> {
         while self.is_on() {
             if progress(self.share_done()).is_break() {
@@ -149,7 +150,7 @@ impl<'a> Going<'a> {
             }
             let date = self.ahead.get(self.run.days.len()).map(|plan| plan.date);
             if let Some(gates) = date.and_then(|date| set_by(self.setup, date)) {
-                self.asked = Some(Asked::of(&self.site, &Setting::of(gates.clone())));
+                self.asked = Some(Asked { direct: gates.clone(), ..Asked::default() });
             }
             if let Some(morning) = self.morning() {
                 self.pass(morning, None);
