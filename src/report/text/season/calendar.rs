@@ -4,7 +4,7 @@ use chrono::NaiveDate;
 
 use crate::mix::limits::Move;
 use crate::problem::harmless;
-use crate::season::{Decision, GateLife, Reached};
+use crate::season::{Decision, Fully, GateLife, Reached};
 use crate::site::Site;
 use crate::tasks::Context;
 use crate::tasks::season::SeasonRun;
@@ -32,10 +32,25 @@ fn gate(context: &Context, life: &GateLife, system: System) -> String {
     };
     let Some(last) = life.last_day else {
         let before = reason.map_or_else(String::new, |why| format!("; before that: {why}"));
-        return format!("{name:<NAME$}from {first} to the end{before}");
+        return format!("{name:<NAME$}from {first} to the end{}{before}", fully(life));
     };
-    let book = life.book_by.map_or_else(String::new, |by| format!("; open then: {}", book(context, by)));
-    format!("{name:<NAME$}from {first} to {last}; then {}{book}", reason.unwrap_or_default())
+    let book = life.book_by.map_or_else(String::new, |by| format!("; {}", book(context, by)));
+    format!("{name:<NAME$}from {first} to {last}{}; then {}{book}", fully(life), reason.unwrap_or_default())
+}
+
+/// On which days of a stretch a gate can be opened as wide as it goes, where that is not all of them.
+fn fully(life: &GateLife) -> String {
+    let (from, to) = match life.fully {
+        Fully::Always => return String::new(),
+        Fully::Never => return ", never fully open".to_owned(),
+        Fully::Within(from, to) => (from, to),
+    };
+    let ends = [
+        (Some(from) != life.first_day).then(|| format!(" from {from}")),
+        (Some(to) != life.last_day).then(|| format!(" to {to}")),
+    ];
+    let ends: String = ends.into_iter().flatten().collect();
+    format!(", fully open only{ends}")
 }
 
 /// What is moved when, by whom, and by when the crew must be told.
@@ -51,11 +66,12 @@ pub fn moves(context: &Context, run: &SeasonRun, system: System) -> Vec<String> 
         let forced = on.forced.as_ref().map_or_else(String::new, |(_, words)| {
             format!("; forced by {}", harmless(&in_system(words, system)))
         });
+        let because = on.because.as_ref().map_or_else(String::new, |words| format!("; {}", harmless(words)));
         let by = on.book_by.map_or_else(String::new, |by| format!("; {}", book(context, by)));
         let decision = run.run.decisions.iter().find(|d| d.date == on.date);
         let past =
             decision.and_then(|d| past(site, d, system)).map_or_else(String::new, |p| format!("; {p}"));
-        format!("{}  {}{forced}{by}{past}", on.date, moved_words(site, &on.moved, system))
+        format!("{}  {}{forced}{because}{by}{past}", on.date, moved_words(site, &on.moved, system))
     }));
     // a limit of the change can be broken where no gate moves
     let still = run.run.decisions.iter().filter(|d| !outcome.calendar.iter().any(|on| on.date == d.date));
