@@ -159,10 +159,9 @@ fn scenario_the_text_says_what_the_data_say_and_never_more() {
     let moves = answer["moves"].as_u64().unwrap();
     assert!(text.contains("2025-07-14 to 2025-08-26; plan steady"), "{text}");
     assert!(text.contains("steady, middling, best"), "{text}");
-    assert!(
-        text.contains(&format!("{} d {:.1} {moves}", score["days_outside"], number(&score["worst_c"]))),
-        "{text}"
-    );
+    let [worst, oxygen] = [&score["worst_c"], &answer["oxygen_min_mg_l"]].map(number);
+    let figures = format!("{} d {worst:.1} {oxygen:.1} {moves}", score["days_outside"]);
+    assert!(text.contains(&figures), "{text}");
     let first = &answer["cold_water"][0]["days"][18];
     let [usable, all] = ["usable_m3", "total_m3"].map(|key| format!("{:.2} hm3", number(&first[key]) / 1e6));
     assert!(text.contains("2025-08-01") && text.contains(&usable) && text.contains(&all), "{text}");
