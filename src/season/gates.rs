@@ -86,7 +86,7 @@ fn why(site: &Site, check: &Check, named: bool) -> (&'static str, String) {
         let reason = if outage.reason.is_empty() { String::new() } else { format!(", {}", outage.reason) };
         format!("outage{of} {end}{reason}")
     });
-    (check.rule.name(), words.unwrap_or_else(|| check.words(site)))
+    (check.rule.name(), words.unwrap_or_else(|| check.plain(site)))
 }
 
 /// Whether a gate is set open on a day.
