@@ -107,7 +107,7 @@ pub(super) fn why(site: &Site, check: &Check, named: bool) -> (&'static str, Str
         let reason = if outage.reason.is_empty() { String::new() } else { format!(", {}", outage.reason) };
         format!("outage{of} {end}{reason}")
     });
-    (check.rule.name(), words.unwrap_or_else(|| check.words(site)))
+    (check.rule.name(), words.unwrap_or_else(|| check.plain(site)))
 }
 
 /// The decision that leaves a gate as it stands after its last usable day: on that day, or where a limit then forces it

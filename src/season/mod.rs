@@ -57,7 +57,7 @@ pub use outcome::{
 };
 pub use oxygen::{demand_at, left_mg_l};
 pub use plan::{Plan, PlanDay, RawPlan, RawPlanRow, Schedule};
-pub use price::{Change, PRICE_MEMBERS, Price, Pricing, prices};
+pub use price::{Change, Difference, PRICE_MEMBERS, Price, Pricing, prices};
 pub use run::{Choosing, Ended, Run, SeasonDay, Setup, passed, run};
 pub use skies::{Skies, Sky};
 pub use step::{Forcing, Inflow, MOST_OPEN, Stepped, Unbalanced, day};

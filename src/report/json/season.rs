@@ -1,5 +1,7 @@
 //! The answer of `season` as JSON.
 
+use chrono::NaiveDate;
+
 use crate::mix::Setting;
 use crate::problem::harmless;
 use crate::report::text::river::unit_si;
@@ -51,6 +53,7 @@ fn run(site: &Site, answer: &SeasonAnswer, of: &SeasonRun) -> RunJson {
         strategy: of.run.strategy.clone(),
         foresight: of.foresight,
         weather_seen: answer.seen(of) != Seen::Nothing,
+        cold_water_below_c: cold.first().map(|water| water.threshold_c),
         days: (of.run.days.iter().enumerate()).map(|(i, d)| day(site, of, d, cold.first(), i)).collect(),
         gates: outcome.gates.iter().map(|g| gate(site, g)).collect(),
         exhausted_on: on(exhausted),
@@ -148,9 +151,20 @@ fn day(site: &Site, of: &SeasonRun, day: &SeasonDay, cold: Option<&ColdWater>, a
         points: day.points.as_ref().map(arrives),
         cold_water_m3: cold.and_then(|c| c.days.get(at)?.usable_m3),
         attainable_c: decided.and_then(|d| d.attainable_c),
+        outside: outside(site, of, day.date),
         balance_water_m3: day.balance.water_m3.error(),
         balance_heat_j: day.balance.heat_j.error(),
     }
+}
+
+/// Names of the hard targets that a day lies outside of.
+fn outside(site: &Site, of: &SeasonRun, date: NaiveDate) -> Vec<String> {
+    let missed = |told: &&TargetTally| {
+        let marks = told.temperature_days.iter().chain(&told.oxygen_days);
+        marks.into_iter().any(|(day, mark)| *day == date && mark.outside())
+    };
+    let hard = of.outcome.targets.iter().filter(missed).filter_map(|told| site.targets.get(told.target));
+    hard.filter(|rule| !rule.soft).map(|rule| rule.name.clone()).collect()
 }
 
 fn gate(site: &Site, life: &GateLife) -> GateJson {
@@ -190,6 +204,10 @@ fn targets(site: &Site, of: &SeasonRun) -> Vec<TargetJson> {
             name: rule.name.clone(),
             point: rule.point.clone(),
             case: of.run.case.clone(),
+            low: rule.low_c,
+            preferred: rule.preferred_c,
+            high: rule.high_c,
+            oxygen_min_mg_l: rule.oxygen_min_mg_l,
             days_outside: told.days_outside(),
             degree_days_outside: told.temperature.as_ref().filter(|_| degrees).map(|t| t.sum_outside),
             longest_run: told.longest_run(),

@@ -31,6 +31,8 @@ pub(super) struct RunJson {
     pub(super) foresight: bool,
     /// Solved with this weather in view, under this plan or another.
     pub(super) weather_seen: bool,
+    /// What `cold_water_m3` of the days is colder than: the first threshold of the site.
+    pub(super) cold_water_below_c: Option<f64>,
     pub(super) days: Vec<DayJson>,
     pub(super) gates: Vec<GateJson>,
     /// Null where it does not run out by the end of the season; see `exhausted_unknown`.
@@ -81,6 +83,8 @@ pub(super) struct DayJson {
     pub(super) cold_water_m3: Option<f64>,
     /// On days of decision.
     pub(super) attainable_c: Option<[f64; 2]>,
+    /// Names of the hard targets it lies outside of.
+    pub(super) outside: Vec<String>,
     pub(super) balance_water_m3: f64,
     pub(super) balance_heat_j: f64,
 }
@@ -127,6 +131,11 @@ pub(super) struct TargetJson {
     pub(super) name: String,
     pub(super) point: String,
     pub(super) case: String,
+    /// What it asks, in the unit of its statistic, and its floor of oxygen.
+    pub(super) low: Option<f64>,
+    pub(super) preferred: Option<f64>,
+    pub(super) high: Option<f64>,
+    pub(super) oxygen_min_mg_l: Option<f64>,
     pub(super) days_outside: u32,
     pub(super) degree_days_outside: Option<f64>,
     pub(super) longest_run: u32,

@@ -107,7 +107,16 @@ impl Table<'_> {
         };
         let run = run(&setup, progress).ok_or(Failure::Stopped)?;
         let outcome = outcome(&setup, &run);
-        Ok(SeasonRun { plan: plan.clone(), skies: skies.clone(), run, outcome, foresight: false })
+        let is_chosen =
+            !matches!(choosing, Choosing::By(Strategy::Hold) | Choosing::Schedule(_) | Choosing::Found(_));
+        Ok(SeasonRun {
+            plan: plan.clone(),
+            skies: skies.clone(),
+            run,
+            outcome,
+            foresight: false,
+            order: if is_chosen { of.order.clone() } else { Vec::new() },
+        })
     }
 
     /// The air of a case over the days of a plan.

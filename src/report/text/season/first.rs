@@ -7,12 +7,21 @@ use crate::season::{Exhausted, Outcome, Spell, TargetTally};
 use crate::target::{Tally, Target};
 use crate::tasks::Context;
 use crate::tasks::season::{SeasonAnswer, SeasonRun};
-use crate::units::{Dimension, System, show};
+use crate::units::{Dimension, System, in_system, say, show};
 
 use super::super::river::record::{days_of, tally};
 use super::super::river::{amounts, rules};
 use super::super::volume;
 use super::{at_place, exhausted_words, short, unjudged};
+
+/// Cases whose dates are all told (choice: a line or two of them).
+const LISTED: usize = 6;
+
+/// Degree-days outside that are told, C days (choice: half of the whole one shown).
+const SEEN_C_DAYS: f64 = 0.5;
+
+/// A pool this little above full is not told of, m (choice: a gauge shows no less).
+const ABOVE_FULL_M: f64 = 0.01;
 
 /// Label and words of each of them.
 pub(super) fn first(context: &Context, answer: &SeasonAnswer, system: System) -> Vec<(&'static str, String)> {
@@ -24,10 +33,27 @@ pub(super) fn first(context: &Context, answer: &SeasonAnswer, system: System) ->
     for (i, words) in targets.into_iter().enumerate() {
         out.push((if i == 0 { "Outside" } else { "" }, words));
     }
+    out.extend(above_full(context, &answer.main).map(|words| ("POOL", in_system(&words, system))));
     if let Some(ended) = &answer.main.run.ended {
         out.push(("STOPS", format!("on {}: {}", ended.date, harmless(&ended.words))));
     }
     out
+}
+
+/// That the pool comes to stand above full, from when on, and how high at most.
+fn above_full(context: &Context, run: &SeasonRun) -> Option<String> {
+    let full_m = context.site().pool.full_m;
+    let above = || run.run.days.iter().filter(|day| day.pool_m > full_m + ABOVE_FULL_M);
+    let first = above().next()?;
+    let highest = above().max_by(|a, b| a.pool_m.total_cmp(&b.pool_m))?;
+    Some(format!(
+        "the pool stands ABOVE FULL on {}, from {} on: {} at most, on {}, full being {}; look at the flows of the plan",
+        days(u32::try_from(above().count()).unwrap_or(u32::MAX)),
+        first.date,
+        say::m(highest.pool_m, 2),
+        highest.date,
+        say::m(full_m, 2)
+    ))
 }
 
 /// When no allowed mix reaches a target any more, by how much, and how near it comes where one does.
@@ -63,7 +89,8 @@ fn spell(of: &Spell, system: System) -> String {
     format!("{days} by {}{after}", super::super::step(of.most_c, system))
 }
 
-/// `it runs out in 3 of 3 cases, first on 2026-09-12 (warm), last on 2026-10-03 (cool)`; `None` of a single case.
+/// `it runs out in 2 of 3 cases: on 2026-09-12 (warm), 2026-10-03 (cool)`, in the order of the dates; the first and the
+/// last where there are many; `None` of a single case.
 pub fn out_of_reach(answer: &SeasonAnswer) -> Option<String> {
     let cases = answer.cases();
     let known = cases.iter().filter(|r| !matches!(r.outcome.exhausted, Exhausted::Unknown(_))).count();
@@ -79,9 +106,13 @@ pub fn out_of_reach(answer: &SeasonAnswer) -> Option<String> {
     let when = match dates.len() {
         1 => format!("on {} ({})", first.0, first.1),
         _ if first.0 == last.0 => format!("on {} in each of them", first.0),
+        count if count <= LISTED => {
+            let each: Vec<String> = dates.iter().map(|(date, case)| format!("{date} ({case})")).collect();
+            format!("on {}", each.join(", "))
+        }
         _ => format!("first on {} ({}), last on {} ({})", first.0, first.1, last.0, last.1),
     };
-    Some(format!("it runs out in {} of {known} cases, {when}", dates.len()))
+    Some(format!("it runs out in {} of {known} cases: {when}", dates.len()))
 }
 
 /// When the first reserve is gone into; `None` of a site without.
@@ -128,7 +159,7 @@ pub fn targets(context: &Context, run: &SeasonRun, system: System) -> Vec<String
 /// A range's tally, its degree-days with it.
 fn counted(rule: &Target, of: &Tally, unjudged: &str, system: System) -> String {
     let mut out = judged(of, &|by| outside_by(rule, by, false, system), unjudged);
-    if of.sum_outside > 0.0 && rule.is_of_temperature() && !rule.statistic.counts_days() {
+    if of.sum_outside >= SEEN_C_DAYS && rule.is_of_temperature() && !rule.statistic.counts_days() {
         let _ = write!(out, ", {} in all", amounts::degree_days(of.sum_outside, system));
     }
     out
