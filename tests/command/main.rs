@@ -23,6 +23,7 @@ mod refused;
 mod river;
 mod season;
 mod season_days;
+mod season_table;
 mod season_told;
 mod since;
 mod sorrel;

@@ -9,8 +9,8 @@ use gatemix::mix::limits::Move;
 use gatemix::mix::{Asked, Gate, Setting, draw_levels, groups, levels, release};
 use gatemix::rank::Criterion;
 use gatemix::season::{
-    Amount, Balance, Change, Choosing, Decision, Found, Layers, Needed, Plan, PlanDay, Price, Run, SeasonDay,
-    Setup, Skies, Why, outcome,
+    Amount, Balance, Change, Choosing, Decision, Difference, Found, Layers, Needed, Plan, PlanDay, Price, Run,
+    SeasonDay, Setup, Skies, Why, outcome,
 };
 use gatemix::site::Strategy;
 use gatemix::tasks::Context;
@@ -96,10 +96,14 @@ pub(crate) fn answer_left(driver: &mut Driver) {
 /// Prices of so many mixes: the first no sooner or later, each one after it a day later than the one before.
 fn priced(context: &Context, mixes: usize) -> Prices {
     let from = context.on.date_naive();
-    let price = |day| Price {
-        exhausted: Some(Change { days: day, range: (day, 2 * day) }),
-        lasts: [false, false],
-        outside: Some(Change { days: -day, range: (-day, day) }),
+    let price = |day| {
+        let against = Difference {
+            exhausted: Some(Change { days: day, range: (day, 2 * day) }),
+            lasts: [false, false],
+            runs_out: [6, 6],
+            outside: Some(Change { days: -day, range: (-day, day) }),
+        };
+        Price { against, than_first: against, casts: 6 }
     };
     Prices {
         plan: "early".to_owned(),
@@ -267,5 +271,5 @@ fn season(context: &Context, plan: &str, case: &str, strategy: &str) -> SeasonRu
         };
         outcome(&setup, &run)
     };
-    SeasonRun { plan, skies, run, outcome, foresight: false }
+    SeasonRun { plan, skies, run, outcome, foresight: false, order: Vec::new() }
 }

@@ -107,13 +107,14 @@ pub fn needed(context: &Context, answer: &NeededAnswer) -> String {
     out
 }
 
-/// The answer of `check`: every problem, flag and note, and a closing line.
+/// The answer of `check`: every refusal, then every flag, then every note, and a closing line.
 pub fn check(named: &str, problems: &[Problem], system: System) -> String {
     let mut out = String::new();
-    for p in problems {
+    let of = |weight: Weight| problems.iter().filter(move |p| p.weight == weight);
+    for p in [Weight::Refused, Weight::Flag, Weight::Note].into_iter().flat_map(of) {
         let _ = writeln!(out, "{}", p.text(system));
     }
-    let count = |weight: Weight| problems.iter().filter(|p| p.weight == weight).count();
+    let count = |weight: Weight| of(weight).count();
     let _ = writeln!(
         out,
         "{}: {} refused, {} flagged, {} noted",

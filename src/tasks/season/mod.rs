@@ -36,6 +36,8 @@ pub struct SeasonRun {
     pub outcome: Outcome,
     /// Whether its schedule was solved on this very case: foresight, and no evidence.
     pub foresight: bool,
+    /// What counts first where the mix of a day is chosen; empty where a schedule or the setting now tells the gates.
+    pub order: Vec<Criterion>,
 }
 
 impl SeasonRun {
@@ -125,7 +127,9 @@ pub fn season(
     let table = table::Table { context, understood: &understood, now: now.as_ref() };
     let main = table.main(progress)?;
     let others = table.others(&main, progress, &mut notes)?;
+    notes.extend(notes::turned(context, &main));
     notes.extend(notes::nearer(&main, &others, &understood.order));
+    notes.extend(notes::spares(&main, &others));
     if progress(1.0).is_break() {
         return Err(Failure::Stopped);
     }

@@ -110,7 +110,16 @@ impl Table<'_> {
         let setup = self.setup(plan, skies, choosing.clone());
         let run = run(&setup, progress).ok_or(Failure::Stopped)?;
         let outcome = outcome(&setup, &run);
-        Ok(SeasonRun { plan: plan.clone(), skies: skies.clone(), run, outcome, foresight: false })
+        let is_chosen =
+            !matches!(choosing, Choosing::By(Strategy::Hold) | Choosing::Schedule(_) | Choosing::Found(_));
+        Ok(SeasonRun {
+            plan: plan.clone(),
+            skies: skies.clone(),
+            run,
+            outcome,
+            foresight: false,
+            order: if is_chosen { self.understood.order.clone() } else { Vec::new() },
+        })
     }
 
     /// What a season is made from.

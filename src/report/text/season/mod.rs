@@ -15,7 +15,6 @@ use chrono::NaiveDate;
 use unicode_width::UnicodeWidthStr;
 
 use crate::problem::{Problem, Weight, harmless};
-use crate::rank::Criterion;
 use crate::report::flags_of;
 use crate::season::{Exhausted, Run};
 use crate::tasks::Context;
@@ -29,7 +28,7 @@ pub use first::{exhausted, out_of_reach, outside_by, reserve, targets};
 pub use needed::needed;
 pub use price::{asked as priced, lines as prices};
 pub use rest::rest;
-pub use side::{HEADS, Row, columns, meaning, side};
+pub use side::{HEADS, MORE_HEADS, Row, columns, meaning, more_columns, side};
 
 /// Everything but head and caution.
 pub(super) fn body(context: &Context, answer: &SeasonAnswer) -> String {
@@ -111,11 +110,12 @@ fn gates_chosen(context: &Context, answer: &SeasonAnswer) -> String {
     } else {
         ""
     };
-    let order = if answer.order == Criterion::USUAL {
-        String::new()
-    } else {
-        let by: Vec<&str> = answer.order.iter().map(|criterion| criterion.name()).collect();
-        format!(", ordered by {}", by.join(", "))
+    let order = match answer.main.order.as_slice() {
+        [] => String::new(),
+        order => {
+            let by: Vec<&str> = order.iter().map(|criterion| criterion.name()).collect();
+            format!("; on each day of decision the mixes are ordered by {}", by.join(", "))
+        }
     };
     format!(
         "{held}{}, decided every {}{order}{solved}",
