@@ -10,8 +10,10 @@ mod ahead;
 mod aims;
 mod balance;
 mod beware;
+mod called;
 mod cold;
 mod decide;
+mod deciding;
 mod diffusion;
 mod exact;
 mod gates;
@@ -50,8 +52,8 @@ pub use learn::{
 };
 pub use mixing::{friction_velocity_m_s, mixing_energy_j, wind_work_j_m2};
 pub use outcome::{
-    Asks, ColdDay, ColdWater, Exhausted, GateLife, GateMoves, Left, Outcome, Reached, StageDate, StageFall,
-    Stopping, outcome,
+    Asks, ColdDay, ColdWater, Exhausted, Fully, GateLife, GateMoves, Left, Outcome, Reached, Spell,
+    StageDate, StageFall, Stopping, Turned, outcome,
 };
 pub use oxygen::{demand_at, left_mg_l};
 pub use plan::{Plan, PlanDay, RawPlan, RawPlanRow, Schedule};

@@ -187,7 +187,7 @@ fn held(
     let site = season_site(&setup);
     let reached = reached::reached(&setup, &site, &season);
     let end = season.days.last().and_then(|day| day.date.succ_opt());
-    let (exhausted, lasts) = match reached::exhausted(&reached, &season).first {
+    let (exhausted, lasts) = match reached::exhausted(&reached, &season).0 {
         Exhausted::On(date) => (Some(date), false),
         Exhausted::NotBy(_) => (end, true),
         Exhausted::Unknown(_) => (None, false),

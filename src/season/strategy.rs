@@ -32,14 +32,6 @@ pub(super) fn name(choosing: &Choosing) -> &'static str {
     }
 }
 
-/// Whether something is decided on a date because its time has come.
-pub(super) fn is_due(setup: &Setup, decides: NaiveDate, date: NaiveDate) -> bool {
-    let from = if let Choosing::Held(_, until) = &setup.choosing { *until } else { decides };
-    let passed = (date - from).num_days();
-    let is_turn = passed >= 0 && passed % i64::from(setup.decide_days.max(1)) == 0;
-    is_turn || changes_on(setup, date)
-}
-
 /// Whether a schedule changes gates on a date.
 pub(super) fn changes_on(setup: &Setup, date: NaiveDate) -> bool {
     schedule(&setup.choosing).is_some_and(|s| s.changes.iter().any(|change| change.0 == date))
@@ -49,7 +41,13 @@ pub(super) fn changes_on(setup: &Setup, date: NaiveDate) -> bool {
 pub(super) fn wants(setup: &Setup, decides: NaiveDate, site: &Site, date: NaiveDate, why: Why) -> Wants {
     let is_forced = matches!(why, Why::Forced(_));
     match &setup.choosing {
-        Choosing::Held(asked, until) if date < *until && !is_forced => Wants::These(asked.clone()),
+        Choosing::Held(asked, until) if date < *until && !is_forced => {
+            if why == Why::Begin {
+                Wants::These(asked.clone())
+            } else {
+                Wants::Stay
+            }
+        }
         Choosing::By(Strategy::Best | Strategy::Thrift) | Choosing::Held(..) => Wants::Best(0.0),
         Choosing::Aims(aims) => Wants::Best(aim_on(aims, decides, setup.decide_days, date)),
         Choosing::By(Strategy::Hold) if is_forced => Wants::Best(0.0),

@@ -3,6 +3,7 @@
 
 #![allow(clippy::unwrap_used, reason = "a test stops at its first surprise")]
 
+mod beware;
 mod decided;
 mod gas;
 mod layering;

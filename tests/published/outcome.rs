@@ -9,7 +9,7 @@ use gatemix::files::site::site;
 use gatemix::mix::limits::Move;
 use gatemix::mix::{Asked, Blend, Gate};
 use gatemix::profile::{self, Profile};
-use gatemix::river::{Conditions, Figures};
+use gatemix::river::Conditions;
 use gatemix::season::{
     Balance, Choosing, Decision, Exhausted, Layer, Layers, Outcome, Plan, Run, SeasonDay, Setup, Skies, Why,
     outcome,
@@ -17,7 +17,7 @@ use gatemix::season::{
 use gatemix::site::{Case, Outage, Site, Strategy};
 
 /// A box of a million square metres, two gates and a bottom outlet whose crews want notice.
-const SITE: &str = r#"name: Outcome Dam (invented)
+pub(crate) const SITE: &str = r#"name: Outcome Dam (invented)
 units: { length: m, area: m2, volume: m3, flow: m3/s, temperature: C }
 utc_offset: "+00:00"
 pool: { bed: 0, full: 60, table: [[0, 1.0e6], [60, 1.0e6]] }
@@ -40,16 +40,16 @@ targets:
 cold_water: [10]
 "#;
 
-fn date(text: &str) -> NaiveDate {
+pub(crate) fn date(text: &str) -> NaiveDate {
     text.parse().unwrap()
 }
 
 /// The first day of every season here.
-fn begin() -> NaiveDate {
+pub(crate) fn begin() -> NaiveDate {
     date("2026-08-01")
 }
 
-fn checked(text: &str) -> Site {
+pub(crate) fn checked(text: &str) -> Site {
     let read = site(text, "site.yaml");
     read.site.unwrap_or_else(|| panic!("{:?}", read.problems))
 }
@@ -101,7 +101,7 @@ fn day(number: u64) -> SeasonDay {
 }
 
 /// What leaves on a day, to be changed.
-fn left(day: &mut SeasonDay) -> &mut Blend {
+pub(crate) fn left(day: &mut SeasonDay) -> &mut Blend {
     day.release.as_mut().unwrap()
 }
 
@@ -120,7 +120,12 @@ fn decision(number: u64, attainable_c: Option<[f64; 2]>) -> Decision {
 }
 
 /// A season of days and decisions, and what comes of it at a site with the outages of a plan.
-fn of(site: &Site, days: Vec<SeasonDay>, decisions: Vec<Decision>, outages: Vec<Outage>) -> Outcome {
+pub(crate) fn of(
+    site: &Site,
+    days: Vec<SeasonDay>,
+    decisions: Vec<Decision>,
+    outages: Vec<Outage>,
+) -> Outcome {
     let start = cast(site);
     let plan = Plan { name: "p".into(), file: "p.csv".into(), days: Vec::new(), outages, notes: Vec::new() };
     let case = Case { name: "c".into(), air_c: 0.0, wind: 1.0, inflow: 1.0, inflow_c: 0.0 };
@@ -176,7 +181,7 @@ fn cast(site: &Site) -> Profile {
     Profile::build(&raw, site, None).0.unwrap()
 }
 
-fn days(count: u64) -> Vec<SeasonDay> {
+pub(crate) fn days(count: u64) -> Vec<SeasonDay> {
     (0..count).map(day).collect()
 }
 
@@ -225,16 +230,25 @@ fn scenario_it_runs_out_on_the_first_day_no_mix_comes_down_to_the_high() {
         let told = coldest.iter().enumerate();
         let decisions = told.map(|(i, c)| decision(7 * i as u64, Some([*c, 20.0]))).collect();
         let out = of(&site, days(30), decisions, Vec::new());
-        (out.exhausted, out.exhausted_last, out.exhausted_until)
+        let spells: Vec<_> = out.spells.iter().map(|s| (s.from, s.to, s.until, s.most_c)).collect();
+        (out.exhausted, spells)
     };
-    let from = |from: &str, last: &str, until: Option<&str>| {
-        (Exhausted::On(date(from)), Some(date(last)), until.map(date))
+    let spell = |from: &str, to: &str, until: Option<&str>, most_c: f64| {
+        (date(from), date(to), until.map(date), most_c)
+    };
+    let from = |from: &str, to: &str, until: Option<&str>, most_c: f64| {
+        (Exhausted::On(date(from)), vec![spell(from, to, until, most_c)])
     };
     // 1, 8 and 15 August are the summer rule's (high 12), 22 and 29 the autumn rule's (high 10)
-    assert_eq!(on([12.0, 8.0, 8.0, 10.0, 8.0]), (Exhausted::NotBy(date("2026-08-30")), None, None));
-    assert_eq!(on([8.0, 8.0, 8.0, 10.0, 10.5]), from("2026-08-29", "2026-08-29", None));
-    assert_eq!(on([8.0, 8.0, 8.0, 11.0, 10.0]), from("2026-08-22", "2026-08-22", Some("2026-08-29")));
-    assert_eq!(on([12.5, 12.5, 12.5, 10.5, 9.0]), from("2026-08-01", "2026-08-22", Some("2026-08-29")));
+    assert_eq!(on([12.0, 8.0, 8.0, 10.0, 8.0]), (Exhausted::NotBy(date("2026-08-30")), Vec::new()));
+    assert_eq!(on([8.0, 8.0, 8.0, 10.0, 10.5]), from("2026-08-29", "2026-08-29", None, 0.5));
+    assert_eq!(on([8.0, 8.0, 8.0, 11.0, 10.0]), from("2026-08-22", "2026-08-22", Some("2026-08-29"), 1.0));
+    assert_eq!(on([12.5, 12.5, 12.5, 10.5, 9.0]), from("2026-08-01", "2026-08-22", Some("2026-08-29"), 0.5));
+    let twice = vec![
+        spell("2026-08-01", "2026-08-01", Some("2026-08-08"), 1.0),
+        spell("2026-08-15", "2026-08-22", Some("2026-08-29"), 2.0),
+    ];
+    assert_eq!(on([13.0, 8.0, 12.5, 12.0, 8.0]), (Exhausted::On(begin()), twice));
     let out = of(&site, days(3), vec![decision(0, Some([13.0, 20.0]))], Vec::new());
     assert_eq!(out.reached[0].range_c(), (Some(8.0), Some(12.0)), "a wish bounds nothing");
     assert_abs_diff_eq!(out.reached[0].by_c().unwrap(), 1.0, epsilon = 1e-12);
@@ -250,13 +264,19 @@ fn scenario_gates_are_lost_by_a_falling_pool_and_come_with_a_rising_one() {
         day.pool_m = pool_m;
         day.layers = layers(10.0, pool_m);
     }
-    season[1].gates.push(Gate { outlet: 0, opening: 1.0, flow_m3s: 5.0 });
-    let out = of(&site, season, Vec::new(), Vec::new());
+    // shut on the first day of too little water, as a limit forces it
+    let shut = Decision {
+        moved: vec![Move { outlet: 0, from: 1.0, to: 0.0, from_m3s: 5.0, to_m3s: 0.0 }],
+        lead_days: 10.0,
+        ..decision(2, None)
+    };
+    let out = of(&site, season, vec![shut], Vec::new());
+    assert_eq!(out.calendar[0].book_by, Some(date("2026-07-24")));
     let of_high: Vec<_> = out.gates.iter().filter(|g| g.outlet == 0).collect();
     assert_eq!(of_high.len(), 2);
     assert_eq!((of_high[0].first_day, of_high[0].last_day), (Some(begin()), Some(date("2026-08-02"))));
     assert_eq!(of_high[0].reason.as_ref().unwrap().0, "min_submergence");
-    assert_eq!(of_high[0].book_by, Some(date("2026-07-23")), "open on its last day: ten days before");
+    assert_eq!(of_high[0].book_by, out.calendar[0].book_by, "ten days before it is moved");
     assert_eq!((of_high[1].first_day, of_high[1].last_day), (Some(date("2026-08-05")), None));
     assert_eq!(of_high[1].reason.as_ref().unwrap().0, "min_submergence", "why not before");
     assert_eq!(out.gates.iter().filter(|g| g.outlet == 1).count(), 1);
@@ -343,110 +363,4 @@ fn scenario_degree_days_reach_their_stages() {
     assert_eq!(on[1], &Exhausted::NotBy(date("2026-08-06")));
     assert!(matches!(on[2], Exhausted::Unknown(_)), "what arrives at the ford is not known");
     assert!(matches!(on[4], Exhausted::Unknown(_)), "the season ends before counting begins");
-}
-
-#[test]
-fn scenario_deep_water_drawn_from_the_start_is_told_where_it_grows() {
-    let (site, mut season) = (checked(SITE), days(3));
-    for (day, share) in season.iter_mut().zip([0.2, 0.24, 0.26]) {
-        left(day).oxygen_low_share = share;
-    }
-    let told = &of(&site, season, Vec::new(), Vec::new()).warnings[0];
-    assert_eq!((told.kind, told.date), ("deep-water", date("2026-08-03")));
-    assert!(told.words.starts_with("26 % of the release") && told.words.contains("20 % on the first day"));
-}
-
-#[test]
-fn scenario_what_to_beware_of() {
-    let site = checked(SITE);
-    let mut season = days(5);
-    left(&mut season[2]).oxygen_low_share = 0.2;
-    left(&mut season[3]).oxygen_below_mg_l = Some(5.5);
-    season[3].overturned = true;
-    // 55.5 at the start; half a metre, then a whole one
-    season[4].pool_m = 54.0;
-    let figures = |flow_m3s: f64| Figures {
-        mean_c: 10.0,
-        range_c: None,
-        hourly_change_c: None,
-        oxygen_mean_mg_l: None,
-        oxygen_min_mg_l: None,
-        oxygen_share: None,
-        flow_m3s,
-    };
-    for (day, flow) in season.iter_mut().zip([50.0, 50.0, 30.0, 40.0, 40.0]) {
-        day.points = Some(vec![figures(flow)]);
-    }
-    let out = of(&site, season, Vec::new(), Vec::new());
-    let told: Vec<(&str, NaiveDate)> = out.warnings.iter().map(|w| (w.kind, w.date)).collect();
-    assert_eq!(told, [("deep-water", date("2026-08-03")), ("max_drawdown_per_day", date("2026-08-05"))]);
-    assert!(out.warnings[0].words.starts_with("20 % of the release"));
-    assert_eq!(out.least_oxygen, Some((5.5, date("2026-08-04"))));
-    assert_eq!(out.turnover, Some(date("2026-08-04")));
-    let (fall_m, on) = out.fastest_fall.unwrap();
-    assert_abs_diff_eq!(fall_m, 1.0, epsilon = 1e-9);
-    assert_eq!(on, date("2026-08-05"));
-    assert_abs_diff_eq!(out.stage_falls[0].m_per_hour, 0.2, epsilon = 1e-9);
-    // 20 m3/s past the machines for five days of 24 hours: 4 MW
-    assert_abs_diff_eq!(out.generation_lost_mwh.unwrap(), 4.0 * 24.0 * 5.0, epsilon = 1e-9);
-    assert!(out.warnings[0].words.contains("against 0 % on the first day"));
-    assert!(out.warnings[1].words.contains("on 1 of 5 days"));
-    let mut near = days(2);
-    (near[0].pool_m, near[1].pool_m) = (54.895, 54.29);
-    assert!(of(&site, near, Vec::new(), Vec::new()).warnings.is_empty());
-    // what was drawn from the start is not new
-    let mut all = days(3);
-    for day in &mut all {
-        left(day).oxygen_low_share = 0.2;
-    }
-    assert!(of(&site, all, Vec::new(), Vec::new()).warnings.is_empty());
-}
-
-#[test]
-fn scenario_a_stage_that_falls_faster_than_allowed_is_told() {
-    let limited = |most: &str| checked(&SITE.replace("[100, 2]]", &format!("[100, 2]], {most}")));
-    let figures = |flow_m3s: f64| Figures {
-        mean_c: 10.0,
-        range_c: None,
-        hourly_change_c: None,
-        oxygen_mean_mg_l: None,
-        oxygen_min_mg_l: None,
-        oxygen_share: None,
-        flow_m3s,
-    };
-    let mut season = days(5);
-    // a change is made in two hours and 50 m3/s are a metre of stage: 0.2, 0, 0.1 and 0.1 m an hour
-    for (day, flow) in season.iter_mut().zip([60.0, 40.0, 40.0, 30.0, 20.0]) {
-        day.points = Some(vec![figures(flow)]);
-    }
-    let told = |site: &Site| -> Vec<(&'static str, NaiveDate, String)> {
-        let out = of(site, season.clone(), Vec::new(), Vec::new());
-        out.warnings.into_iter().map(|w| (w.kind, w.date, w.words)).collect()
-    };
-    let over = told(&limited("max_stage_fall_per_hour: 0.15"));
-    assert_eq!((over.len(), over[0].0, over[0].1), (1, "max_stage_fall_per_hour", date("2026-08-02")));
-    assert!(over[0].2.starts_with("the stage at Ford can fall by more than"), "{}", over[0].2);
-    assert!(over[0].2.contains("on 1 of 5 days"), "{}", over[0].2);
-    assert!(told(&limited("max_stage_fall_per_hour: 5 cm"))[0].2.contains("on 3 of 5 days"));
-    assert!(told(&limited("max_stage_fall_per_hour: 0.2")).is_empty(), "just at the limit");
-    assert!(told(&checked(SITE)).is_empty());
-}
-
-#[test]
-fn scenario_an_outage_is_told_by_its_dates() {
-    let site = checked(SITE);
-    let outage = |to: Option<NaiveDate>, reason: &str| {
-        vec![Outage { outlet: 2, from: begin(), to, reason: reason.into() }]
-    };
-    let why = |outages: Vec<Outage>| {
-        let out = of(&site, days(6), Vec::new(), outages);
-        let low = out.gates.into_iter().find(|g| g.outlet == 2).unwrap();
-        (low.first_day, low.reason.unwrap().1)
-    };
-    let until = Some(date("2026-08-03"));
-    assert_eq!(
-        why(outage(until, "hoists renewed")),
-        (Some(date("2026-08-04")), "outage until 2026-08-03, hoists renewed".to_owned())
-    );
-    assert_eq!(why(outage(None, "")), (None, "outage with no end told".to_owned()));
 }

@@ -39,6 +39,11 @@ pub(super) struct RunJson {
     pub(super) exhausted_on: Option<String>,
     /// First day of decision after it on which an allowed mix comes down to the high again.
     pub(super) exhausted_until: Option<String>,
+    /// Every stretch of days of decision on which none does.
+    pub(super) exhausted: Vec<SpellJson>,
+    /// Least room under the high on a day of decision, below zero above it.
+    pub(super) nearest_c: Option<f64>,
+    pub(super) nearest_on: Option<String>,
     pub(super) exhausted_unknown: Option<String>,
     pub(super) under_reserve_on: Option<String>,
     pub(super) targets: Vec<TargetJson>,
@@ -108,6 +113,17 @@ pub(super) struct GateJson {
     pub(super) reason: Option<&'static str>,
     pub(super) text: Option<String>,
     pub(super) book_by: Option<String>,
+    /// First and last day on which it can be opened as wide as it goes; the last null to the end.
+    pub(super) fully_from: Option<String>,
+    pub(super) fully_to: Option<String>,
+}
+
+#[derive(Serialize)]
+pub(super) struct SpellJson {
+    pub(super) from: String,
+    pub(super) to: String,
+    pub(super) until: Option<String>,
+    pub(super) above_c: f64,
 }
 
 #[derive(Serialize)]
@@ -179,6 +195,8 @@ pub(super) struct DecisionJson {
     pub(super) date: String,
     pub(super) why: &'static str,
     pub(super) limit: Option<String>,
+    /// What called for it where it was neither due nor forced.
+    pub(super) because: Option<String>,
     pub(super) attainable_c: Option<[f64; 2]>,
     pub(super) asked_c: [Option<f64>; 2],
     pub(super) moves: usize,

@@ -123,6 +123,7 @@ pub fn season(
     let table = table::Table { context, understood: &understood, now: now.as_ref() };
     let main = table.main(progress)?;
     let others = table.others(&main, progress, &mut notes)?;
+    notes.extend(notes::turned(context, &main));
     notes.extend(notes::nearer(&main, &others, &understood.order));
     notes.extend(notes::spares(&main, &others));
     if progress(1.0).is_break() {

@@ -6,7 +6,7 @@ use chrono::Datelike;
 
 use crate::problem::{Problem, Weight};
 use crate::rank::Criterion;
-use crate::season::Choosing;
+use crate::season::{Choosing, Turned};
 use crate::tasks::Context;
 use crate::units::say;
 
@@ -103,6 +103,23 @@ fn years(context: &Context, of: &Understood) -> Vec<Problem> {
         out.push(Problem::note("years-left-out", words));
     }
     out
+}
+
+/// What is turned from day to day without a move that is counted.
+pub(super) fn turned(context: &Context, main: &SeasonRun) -> Vec<Problem> {
+    let of = |turned: &Turned| {
+        let name = &context.site().outlets.get(turned.outlet)?.name;
+        let days = if turned.days == 1 { "day" } else { "days" };
+        let words = format!(
+            "`{name}` is turned on {} {days} between decisions so that it keeps its share of the release, by {} at most, \
+             on {}: these are not among the moves",
+            turned.days,
+            say::m3s(turned.most_m3s, 2),
+            turned.date
+        );
+        Some(Problem::note("turned", words))
+    };
+    main.outcome.turned.iter().filter_map(of).collect()
 }
 
 /// Strategies beside the one spoken of, in the same case under the same plan, that come out nearer to the targets: a

@@ -219,7 +219,7 @@ pub fn stage_words(context: &Context, answer: &RiverAnswer, point: usize, system
             // the river spreads a change out: it falls no faster than it is made at the dam
             let (hours, _) = change_times(context.site());
             let word = if -by / hours > most_m { "MORE THAN THE" } else { "of" };
-            let [fastest, most] = [-by / hours, most_m].map(|m| length(m, system));
+            let [fastest, most] = [-by / hours, most_m].map(|m| show(m, Dimension::Length, system, 3));
             format!(", by up to {fastest} in an hour, {word} {most} allowed")
         });
         Some(format!("{} {change} the stage by {}{against}", which.word(), length(by.abs(), system)))

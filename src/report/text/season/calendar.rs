@@ -5,7 +5,7 @@ use chrono::NaiveDate;
 use crate::mix::limits::Move;
 use crate::problem::harmless;
 use crate::rank::Criterion;
-use crate::season::{Decision, GateLife, Reached, Why};
+use crate::season::{Decision, Fully, GateLife, Reached, Why};
 use crate::site::Site;
 use crate::target::{DAM, Target};
 use crate::tasks::Context;
@@ -40,10 +40,25 @@ fn gate(context: &Context, life: &GateLife, system: System) -> String {
     };
     let Some(last) = life.last_day else {
         let before = reason.map_or_else(String::new, |why| format!("; before that: {why}"));
-        return format!("{name:<NAME$}from {first} to the end{before}");
+        return format!("{name:<NAME$}from {first} to the end{}{before}", fully(life));
     };
-    let book = life.book_by.map_or_else(String::new, |by| format!("; open then: {}", book(context, by)));
-    format!("{name:<NAME$}from {first} to {last}; then {}{book}", reason.unwrap_or_default())
+    let book = life.book_by.map_or_else(String::new, |by| format!("; {}", book(context, by)));
+    format!("{name:<NAME$}from {first} to {last}{}; then {}{book}", fully(life), reason.unwrap_or_default())
+}
+
+/// On which days of a stretch a gate can be opened as wide as it goes, where that is not all of them.
+fn fully(life: &GateLife) -> String {
+    let (from, to) = match life.fully {
+        Fully::Always => return String::new(),
+        Fully::Never => return ", never fully open".to_owned(),
+        Fully::Within(from, to) => (from, to),
+    };
+    let ends = [
+        (Some(from) != life.first_day).then(|| format!(" from {from}")),
+        (Some(to) != life.last_day).then(|| format!(" to {to}")),
+    ];
+    let ends: String = ends.into_iter().flatten().collect();
+    format!(", fully open only{ends}")
 }
 
 /// What is moved when, by whom, and by when the crew must be told.
@@ -56,13 +71,15 @@ pub fn moves(context: &Context, run: &SeasonRun, system: System) -> Vec<String> 
         outcome.crew_hours
     )];
     out.extend(outcome.calendar.iter().map(|on| {
-        let forced = on.forced.as_ref().map(|(_, words)| harmless(&in_system(words, system)));
+        let forced =
+            on.forced.as_ref().map(|(_, words)| format!("forced: {}", harmless(&in_system(words, system))));
+        let because = || on.because.as_ref().map(|words| harmless(words));
         let by = on.book_by.map_or_else(String::new, |by| format!("; {}", book(context, by)));
         let decision = run.run.decisions.iter().find(|d| d.date == on.date);
         let past =
             decision.and_then(|d| past(site, d, system)).map_or_else(String::new, |p| format!("; {p}"));
-        let why =
-            forced.map_or_else(|| decision.map_or("", due).to_owned(), |limit| format!("forced: {limit}"));
+        let due = || decision.map_or("", due).to_owned();
+        let why = forced.or_else(because).unwrap_or_else(due);
         let makes = changed(run, on.date, system).map_or_else(String::new, |words| format!("; {words}"));
         format!("{}  {}; {why}{makes}{by}{past}", on.date, moved_words(site, &on.moved, system))
     }));
@@ -77,7 +94,7 @@ fn due(of: &Decision) -> &'static str {
     match of.why {
         Why::Begin => "the first decision",
         Why::Due => "due",
-        Why::Forced(_) => "forced",
+        _ => "",
     }
 }
 

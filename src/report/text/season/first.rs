@@ -3,16 +3,16 @@
 use std::fmt::Write as _;
 
 use crate::problem::harmless;
-use crate::season::{Exhausted, Outcome, TargetTally};
+use crate::season::{Exhausted, Outcome, Spell, TargetTally};
 use crate::target::{Tally, Target};
 use crate::tasks::Context;
 use crate::tasks::season::{SeasonAnswer, SeasonRun};
-use crate::units::{System, in_system, say};
+use crate::units::{Dimension, System, in_system, say, show};
 
 use super::super::river::record::{days_of, tally};
 use super::super::river::{amounts, rules};
 use super::super::volume;
-use super::{at_place, exhausted_words, unjudged};
+use super::{at_place, exhausted_words, short, unjudged};
 
 /// Cases whose dates are all told (choice: a line or two of them).
 const LISTED: usize = 6;
@@ -26,7 +26,7 @@ const ABOVE_FULL_M: f64 = 0.01;
 /// Label and words of each of them.
 pub(super) fn first(context: &Context, answer: &SeasonAnswer, system: System) -> Vec<(&'static str, String)> {
     let outcome = &answer.main.outcome;
-    let mut out = vec![("Runs out", exhausted(outcome))];
+    let mut out = vec![("Runs out", exhausted(outcome, system))];
     out.extend(out_of_reach(answer).map(|words| ("", words)));
     out.extend(reserve(context, outcome, system).map(|words| ("Reserve", words)));
     let targets = targets(context, &answer.main, system);
@@ -56,26 +56,37 @@ fn above_full(context: &Context, run: &SeasonRun) -> Option<String> {
     ))
 }
 
-/// When no allowed mix reaches a target any more.
-pub fn exhausted(outcome: &Outcome) -> String {
+/// When no allowed mix reaches a target any more, by how much, and how near it comes where one does.
+pub fn exhausted(outcome: &Outcome, system: System) -> String {
     let what = "even the coldest mix allowed is too warm for the target at the dam";
-    match (&outcome.exhausted, outcome.exhausted_until) {
-        (Exhausted::On(date), None) => {
-            let last = outcome.exhausted_last.unwrap_or(*date);
-            format!("from {date} on {what}; to {last}, the last day of decision on which a rule asks")
+    match &outcome.exhausted {
+        Exhausted::On(date) => {
+            let spells: Vec<String> = outcome.spells.iter().map(|of| spell(of, system)).collect();
+            format!("from {date} on {what}: {} (looked at on days of decision)", spells.join(", "))
         }
-        (Exhausted::On(date), Some(until)) => {
+        Exhausted::NotBy(date) => {
+            let nearest = outcome.nearest.map_or_else(String::new, |(room_c, on)| {
+                let room = show(room_c.max(0.0), Dimension::TemperatureDifference, system, 2);
+                format!("; the nearest is {on}, with {room} to spare")
+            });
             format!(
-                "from {date} on {what}; from {until} on one is cold enough again (looked at on days of decision)"
+                "not by {date}: on every day of decision a mix is allowed that is cold enough for the target at the \
+                 dam{nearest}"
             )
         }
-        (Exhausted::NotBy(date), _) => {
-            format!(
-                "not by {date}: on every day of decision a mix is allowed that is cold enough for the target at the dam"
-            )
-        }
-        (Exhausted::Unknown(why), _) => format!("not known: {}", harmless(why)),
+        Exhausted::Unknown(why) => format!("not known: {}", harmless(why)),
     }
+}
+
+/// `09-29 to 10-20, by 0.8 C at most`, and whether one is cold enough again after.
+fn spell(of: &Spell, system: System) -> String {
+    let days =
+        if of.from == of.to { short(of.from) } else { format!("{} to {}", short(of.from), short(of.to)) };
+    let after = of.until.map_or_else(
+        || ", the last day of decision on which a rule asks".to_owned(),
+        |until| format!(", from {} on one is cold enough again", short(until)),
+    );
+    format!("{days} by {}{after}", super::super::step(of.most_c, system))
 }
 
 /// `it runs out in 2 of 3 cases: on 2026-09-12 (warm), 2026-10-03 (cool)`, in the order of the dates; the first and the

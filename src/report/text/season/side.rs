@@ -18,6 +18,8 @@ const NAME: usize = 34;
 const CELLS: [usize; 6] = [8, 8, 6, 8, 7, 6];
 const MORE: [usize; 4] = [12, 8, 13, 10];
 
+/// Columns that a plan has at least.
+const LEAST: usize = 8;
 /// What follows a plan that is cut.
 const CUT: &str = "..";
 
@@ -183,7 +185,7 @@ fn under_heads(rows: &[Row], head: &str, cells: impl Fn(&Row) -> String) -> Vec<
 /// Plan, case and strategy in the columns of names, the plan cut after a word where it is too long.
 fn named([plan, case, strategy]: &[String; 3]) -> String {
     let rest = format!(", {case}, {strategy}");
-    let room = (NAME - 1).saturating_sub(rest.width());
+    let room = (NAME - 1).saturating_sub(rest.width()).max(LEAST);
     if plan.width() <= room {
         return format!("{plan}{rest}");
     }
@@ -243,9 +245,7 @@ mod tests {
         assert_eq!(of("as in 3 of years"), "as in 3 of.., middling, thrift");
         assert_eq!(of("as in other years"), "as in other.., middling, thrift");
         assert_eq!(of("hydroelectric-maximum"), "hydroelectric.., middling, thrift");
-        assert!(
-            named(&["a", "a case with a name of its own and more", "best"].map(str::to_owned))
-                .starts_with("a")
-        );
+        let long = ["as it is", "a case with a name of its own and more", "best"].map(str::to_owned);
+        assert!(named(&long).starts_with("as it is, a case with"));
     }
 }

@@ -15,7 +15,7 @@ pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
         ("Gates", gates(context, run, system)),
         ("Moves", moves(context, run, system)),
         ("Targets", targets(context, run, system)),
-        ("Runs out", vec![exhausted(&run.outcome)]),
+        ("Runs out", vec![exhausted(&run.outcome, system)]),
         ("Reserve", reserve(context, &run.outcome, system).into_iter().collect()),
         ("Within reach on the days of decision", reach(run, system)),
         ("Cold water", cold(run, system)),
