@@ -378,7 +378,11 @@ pub(super) fn parse_date(text: &str) -> Result<NaiveDate, Problem> {
     let date = NaiveDate::parse_from_str(text, "%Y-%m-%d").ok();
     date.filter(|date| YEARS.contains(&date.year())).ok_or_else(|| {
         let short: String = text.chars().take(40).collect();
-        Problem::refused("time", format!("`{short}` is not a date of our days"), "write 2025-07-14")
+        Problem::refused(
+            "time",
+            format!("`{short}` is not a date of our days"),
+            "write YYYY-MM-DD, such as 2025-07-14",
+        )
     })
 }
 

@@ -217,7 +217,7 @@ pub fn check(named: &str) -> (Vec<Problem>, System) {
                 problems.extend(folder.profile_of(listed).1);
             }
             problems.extend(folder.around().problems.iter().cloned());
-            problems.extend(folder.plans().iter().flat_map(|listed| listed.problems.iter().cloned()));
+            problems.extend(folder.plans_said());
             problems.extend(folder.schedules_said());
             problems.extend(folder.years().iter().flat_map(|years| years.problems.iter().cloned()));
             (problems, folder.site.units.system())

@@ -32,6 +32,17 @@ pub enum Why {
     Due,
     /// What was set can no longer be kept.
     Forced(Check),
+    /// A hard rule, by index of the target, begins, or has ended the day before.
+    Rule {
+        /// Index of the target.
+        target: usize,
+        /// Whether it begins.
+        begins: bool,
+    },
+    /// The outage of an outlet, by index, has ended the day before; of several the first of the site.
+    OutageOver(usize),
+    /// The crew of an outlet, by index, can come from this day on; of several the first of the site.
+    Crew(usize),
 }
 
 /// What was decided on a day.
@@ -75,6 +86,8 @@ pub(super) struct Choice<'a> {
     pub(super) before: Before,
     /// What counts first.
     pub(super) order: &'a [Criterion],
+    /// Outlets that are not moved.
+    pub(super) waiting: &'a [usize],
 }
 
 /// A mix decided on.
@@ -174,6 +187,12 @@ impl Choice<'_> {
         tried.map(|tried| self.chosen(tried, &free, &order)).ok_or_else(|| none_allowed(self.site, &free))
     }
 
+    /// Coldest and warmest release within reach, C.
+    pub(super) fn reach_c(&self, progress: Progress) -> Result<Option<[f64; 2]>, NoMix> {
+        let free = self.ranked(false, progress)?;
+        Ok(self.extremes_c(&free, &Order::of(&self.question(self.site))))
+    }
+
     /// What could be set, ranked, with the limits of the change or without: what those keep from one day can be reached
     /// in several. Gates stand shut, as they stand, or as wide as they go; where that allows no mix, in any of their
     /// positions.
@@ -214,9 +233,13 @@ impl Choice<'_> {
         flowing(self.site, self.groups, &self.profile.column, asked, self.profile.pool_m)
     }
 
-    /// A mix in full. `None` where nothing flows.
+    /// A mix in full. `None` where nothing flows, or an outlet moves that is not to.
     pub(super) fn tried(&self, asked: &Asked, order: &Order) -> Option<Tried> {
         let Flowing { setting, drawn, release } = self.flowing(asked)?;
+        let moved = self.now.map_or_else(Vec::new, |now| limits::moved(self.site, now, &setting));
+        if moved.iter().any(|one| self.waiting.contains(&one.outlet)) {
+            return None;
+        }
         let column = &self.profile.column;
         let still = checks(self.site, column, &setting, self.profile.pool_m, self.day.date, &drawn, &release);
         let mut change = Vec::new();
@@ -234,7 +257,7 @@ impl Choice<'_> {
             key: order.key(&Full { temperature_c, oxygen_mg_l, cold_share }, &moves),
             off_c: order.off_c(temperature_c),
             moves,
-            moved: self.now.map_or_else(Vec::new, |now| limits::moved(self.site, now, &setting)),
+            moved,
             still,
             change,
         })

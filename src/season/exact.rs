@@ -90,7 +90,7 @@ impl<'a> Walk<'a> {
                 Ok(Some(every)) => {
                     let choices = every.into_iter().map(|decision| {
                         let mut next = going.clone();
-                        next.pass(morning.clone(), Some(decision));
+                        next.pass(morning.clone(), decision);
                         next
                     });
                     return Ok(Some(choices.collect()));

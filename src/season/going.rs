@@ -6,9 +6,8 @@ use std::sync::Arc;
 
 use chrono::{NaiveDate, NaiveTime};
 
-use crate::intake;
-use crate::mix::limits::{self, Before, Check, Moves};
-use crate::mix::{Asked, Blend, Day, Setting, checks, groups, release, resolve};
+use crate::mix::limits::Check;
+use crate::mix::{Asked, Blend, groups, release};
 use crate::profile::{Column, Profile};
 use crate::rank::Progress;
 use crate::river::{self, Figures};
@@ -16,37 +15,39 @@ use crate::site::Site;
 use crate::units::{DAY_S, say};
 
 use super::ahead::{ahead, forcing};
-use super::aims::asking;
-use super::decide::{Choice, Chosen, Decision, NoMix, Why};
+use super::decide::{Decision, NoMix, Why};
+use super::deciding::eve_of;
 use super::layers::Layers;
 use super::plan::PlanDay;
 use super::run::{Ended, Run, SeasonDay, Setup};
-use super::set::{Flowing, flowing};
+use super::set::Flowing;
 use super::step::day;
-use super::strategy::{Wants, changes_on, is_due, name, set_by, wants};
+use super::strategy::set_by;
 
 /// A release this near to none is none, m3/s (choice: round-off of the volume of a large pool).
-const NOTHING_M3S: f64 = 1e-6;
+pub(super) const NOTHING_M3S: f64 = 1e-6;
 
 /// A season under way.
 #[derive(Clone)]
 pub(super) struct Going<'a> {
     pub(super) setup: &'a Setup<'a>,
     /// The site under the air of the case, with the outages of the plan and the inflow of the day.
-    site: Site,
-    groups: Arc<Vec<Vec<usize>>>,
+    pub(super) site: Site,
+    pub(super) groups: Arc<Vec<Vec<usize>>>,
     ahead: Arc<Vec<PlanDay>>,
     layers: Layers,
     /// The first day on which gates may be moved: at once where nobody knows how they stand.
     pub(super) decides: NaiveDate,
     /// What is set, with the flows of the day it was decided.
-    asked: Option<Asked>,
+    pub(super) asked: Option<Asked>,
     /// Temperature of the last release, C.
-    last_c: Option<f64>,
+    pub(super) last_c: Option<f64>,
     /// Whether what arrives at the points is wanted.
     to_the_points: bool,
-    /// Whether a decision was due on a day without a release.
-    overdue: bool,
+    /// What called for a decision on a day without a release.
+    pub(super) overdue: Option<Why>,
+    /// The site with the outages of the next day, on days before one begins.
+    pub(super) eve: Option<Site>,
     pub(super) run: Run,
 }
 
@@ -54,10 +55,10 @@ pub(super) struct Going<'a> {
 #[derive(Clone)]
 pub(super) struct Morning {
     plan: PlanDay,
-    release_m3s: f64,
-    profile: Profile,
+    pub(super) release_m3s: f64,
+    pub(super) profile: Profile,
     /// What is set, as it would flow today, and the first limit it breaks.
-    held: Option<(Flowing, Option<Check>)>,
+    pub(super) held: Option<(Flowing, Option<Check>)>,
 }
 
 impl Morning {
@@ -67,7 +68,7 @@ impl Morning {
     }
 
     /// Whether nothing is to be released.
-    fn is_closed(&self) -> bool {
+    pub(super) fn is_closed(&self) -> bool {
         self.release_m3s <= 0.0
     }
 }
@@ -84,7 +85,7 @@ impl<'a> Going<'a> {
         let run = Run {
             plan: setup.plan.name.clone(),
             case: setup.skies.case.name.clone(),
-            strategy: name(&setup.choosing).to_owned(),
+            strategy: setup.choosing.name(),
             start: layers.clone(),
             days: Vec::new(),
             decisions: Vec::new(),
@@ -98,7 +99,8 @@ impl<'a> Going<'a> {
             asked: setup.now.map(|now| Asked::of(&site, now)),
             last_c: None,
             to_the_points,
-            overdue: false,
+            overdue: None,
+            eve: None,
             layers,
             site,
             run,
@@ -118,7 +120,14 @@ impl<'a> Going<'a> {
 
     /// Goes through the days that are left. `None` where the caller stops it.
     pub(super) fn finished(mut self, progress: Progress) -> Option<Run> {
-        while self.is_on() {
+        self.through(NaiveDate::MAX, progress)?;
+        Some(self.run)
+    }
+
+    /// Goes through the days up to a date. `None` where the caller stops it.
+    pub(super) fn through(&mut self, last: NaiveDate, progress: Progress) -> Option<()> {
+        let is_due = |next: &PlanDay| next.date <= last;
+        while self.is_on() && self.ahead.get(self.run.days.len()).is_some_and(is_due) {
             let done = self.share_done();
             if progress(done).is_break() {
                 return None;
@@ -126,10 +135,16 @@ impl<'a> Going<'a> {
             // whoever looks on is not told how far a single decision is
             self.next_day(&|_| progress(done))?;
         }
-        Some(self.run)
+        Some(())
     }
 
-    /// Goes through days that have passed: by the schedule, else by what is set now, whatever limit stood against it.
+    /// The same season with other water in the pool.
+    pub(super) fn with(&self, layers: Layers) -> Self {
+        Self { layers, ..self.clone() }
+    }
+
+    /// Goes through days that have passed: by the schedule, its flows as they are told, also those of a well; else by what
+    /// is set now. Whatever limit stood against it.
     pub(super) fn through_what_was(mut self, progress: Progress) -> Option<Run> {
         while self.is_on() {
             if progress(self.share_done()).is_break() {
@@ -137,7 +152,7 @@ impl<'a> Going<'a> {
             }
             let date = self.ahead.get(self.run.days.len()).map(|plan| plan.date);
             if let Some(gates) = date.and_then(|date| set_by(self.setup, date)) {
-                self.asked = Some(Asked::of(&self.site, &Setting::of(gates.clone())));
+                self.asked = Some(Asked { direct: gates.clone(), ..Asked::default() });
             }
             if let Some(morning) = self.morning() {
                 self.pass(morning, None);
@@ -149,7 +164,7 @@ impl<'a> Going<'a> {
     /// Goes through one day. `None` where the caller stops it.
     fn next_day(&mut self, progress: Progress) -> Option<()> {
         let Some(morning) = self.morning() else { return Some(()) };
-        let decided = self.why(&morning).map(|why| self.decision(&morning, why, progress)).transpose();
+        let decided = self.why(&morning).map_or(Ok(None), |why| self.decision(&morning, why, progress));
         match decided {
             Ok(decided) => self.pass(morning, decided),
             Err(NoMix::Cancelled) => return None,
@@ -176,7 +191,9 @@ impl<'a> Going<'a> {
             self.end(plan.date, "the pool holds no water".into(), None);
             return None;
         };
-        let held = self.asked.as_ref().and_then(|asked| self.flows(asked, release_m3s, &profile, plan.date));
+        self.eve = eve_of(&self.site, plan.date);
+        let flows = |asked| self.flows(self.site_today(), asked, release_m3s, &profile, plan.date);
+        let held = self.asked.as_ref().and_then(flows);
         if self.last_c.is_none() {
             self.last_c = held.as_ref().map(|held| held.0.release.temperature_c);
         }
@@ -194,140 +211,16 @@ impl<'a> Going<'a> {
         if release_m3s.abs() < NOTHING_M3S { 0.0 } else { release_m3s }
     }
 
-    /// What is asked, as it would flow on a day, and the first limit it breaks. `None` where it gives no water.
-    fn flows(
-        &self,
-        asked: &Asked,
-        release_m3s: f64,
-        profile: &Profile,
-        date: NaiveDate,
-    ) -> Option<(Flowing, Option<Check>)> {
-        let (site, pool_m) = (&self.site, profile.pool_m);
-        let asked = asked.at_release(site, release_m3s, pool_m);
-        let flowing = flowing(site, &self.groups, &profile.column, &asked, pool_m)?;
-        let Flowing { setting, drawn, release } = &flowing;
-        let checks = checks(site, &profile.column, setting, pool_m, date, drawn, release);
-        let broken = checks.into_iter().find(Check::broken);
-        Some((flowing, broken))
-    }
-
-    /// Why something is decided on a day; `None` where what is set stays.
-    ///
-    /// On a day without a release there is no water to choose: what is due then is decided on the next day with one,
-    /// and only a schedule moves gates.
-    pub(super) fn why(&self, morning: &Morning) -> Option<Why> {
-        let date = morning.date();
-        match (&morning.held, self.run.decisions.is_empty()) {
-            _ if morning.is_closed() => {
-                let is_set = date >= self.decides && changes_on(self.setup, date);
-                let why = if self.run.decisions.is_empty() { Why::Begin } else { Why::Due };
-                is_set.then_some(why)
-            }
-            (Some(_), true) if date < self.decides => None,
-            (_, true) => Some(Why::Begin),
-            (None, _) => Some(Why::Due),
-            (Some(_), _) if self.overdue || is_due(self.setup, self.decides, date) => Some(Why::Due),
-            (Some((_, broken)), _) => broken.map(Why::Forced),
-        }
-    }
-
-    /// What is decided on a day for a reason.
-    fn decision(&self, morning: &Morning, why: Why, progress: Progress) -> Result<Decision, NoMix> {
-        let date = morning.date();
-        let wanted = match wants(self.setup, self.decides, &self.site, date, why) {
-            Wants::Best(aim) => return self.best(morning, why, aim, progress),
-            Wants::Stay => self.asked.clone(),
-            Wants::These(asked) => Some(asked),
-        };
-        if let (true, Some(asked)) = (morning.is_closed(), &wanted) {
-            return Ok(decision(date, why, self.without_water(morning, asked)));
-        }
-        let flows = |asked: &Asked| self.flows(asked, morning.release_m3s, &morning.profile, date);
-        let found = wanted.and_then(|asked| Some((flows(&asked)?, asked)));
-        match found {
-            Some(((_, None), asked)) => {
-                let scaled = asked.at_release(&self.site, morning.release_m3s, morning.profile.pool_m);
-                let chosen = self.on(morning, 0.0, |choice| choice.given(&scaled, progress))?;
-                // a flood may leave its gates nothing to pass: they are kept as they were asked
-                let is_left = scaled.totals.iter().any(|total| total.1 > 0.0)
-                    || scaled.direct.iter().any(|g| g.flow_m3s > 0.0 && !self.spills(g.outlet));
-                Ok(decision(date, why, if is_left { chosen } else { Chosen { asked, ..chosen } }))
-            }
-            Some(((_, Some(check)), _)) => self.best(morning, Why::Forced(check), 0.0, progress),
-            None => self.best(morning, why, 0.0, progress),
-        }
-    }
-
-    /// Gates moved on a day without a release: those that would stand otherwise if water flowed as asked.
-    fn without_water(&self, morning: &Morning, asked: &Asked) -> Chosen {
-        let (site, profile) = (&self.site, &morning.profile);
-        let sum = |asked: &Asked| asked.parts().iter().map(|part| part.1).sum::<f64>();
-        let flow_m3s = sum(asked).max(self.asked.as_ref().map_or(0.0, sum));
-        let full = |asked: &Asked| {
-            let asked = asked.at_release(site, flow_m3s, profile.pool_m);
-            resolve(site, &profile.column, &self.groups, &asked, profile.pool_m)
-        };
-        let to = full(asked);
-        let (moves, moved) = self.asked.as_ref().map(full).map_or_else(Default::default, |now| {
-            (limits::moves(site, &now, &to, &mut Vec::new()), limits::moved(site, &now, &to))
-        });
-        Chosen { asked: asked.clone(), moves, moved, attainable_c: None, past: Vec::new() }
-    }
-
-    fn spills(&self, outlet: usize) -> bool {
-        self.site.outlets.get(outlet).is_some_and(intake::spills_by_itself)
-    }
-
-    fn best(&self, morning: &Morning, why: Why, aim: f64, progress: Progress) -> Result<Decision, NoMix> {
-        let chosen = self.on(morning, aim, |choice| choice.best(progress))?;
-        Ok(decision(morning.date(), why, chosen))
-    }
-
-    /// Every decision there is, where they are no more than so many.
-    pub(super) fn every(
-        &self,
-        morning: &Morning,
-        why: Why,
-        most: usize,
-        progress: Progress,
-    ) -> Result<Option<Vec<Decision>>, NoMix> {
-        let every = self.on(morning, 0.0, |choice| choice.every(most, progress))?;
-        let decisions = |every: Vec<Chosen>| {
-            every.into_iter().map(|chosen| decision(morning.date(), why, chosen)).collect()
-        };
-        Ok(every.map(decisions))
-    }
-
-    /// What a mix of the day is decided on, with an aim.
-    fn on<T>(&self, morning: &Morning, aim: f64, ask: impl FnOnce(&Choice) -> T) -> T {
-        let day = Day::new(&self.site, morning.date(), self.setup.skies.conditions.clone());
-        let shut = Setting::default();
-        let is_shut = |asked: &Asked| asked.parts().iter().all(|part| part.1 <= 0.0);
-        let now = morning.held.as_ref().map(|held| &held.0.setting);
-        let choice = Choice {
-            site: &self.site,
-            groups: &self.groups,
-            profile: &morning.profile,
-            day: &asking(day, &self.site, aim),
-            blocks: [(1.0, morning.release_m3s)],
-            now: now.or_else(|| self.asked.as_ref().is_some_and(is_shut).then_some(&shut)),
-            // the change of the flow is the plan's
-            before: Before { flow_m3s: Some(morning.release_m3s), temperature_c: self.last_c },
-            order: self.setup.order,
-        };
-        ask(&choice)
-    }
-
     /// Goes through a day with what was decided, or with what is set.
     pub(super) fn pass(&mut self, morning: Morning, decided: Option<Decision>) {
         let (date, is_closed) = (morning.date(), morning.is_closed());
         let Morning { plan, release_m3s, profile, mut held } = morning;
-        self.overdue |= is_closed && is_due(self.setup, self.decides, date);
+        self.overdue = if is_closed { self.called(date) } else { self.overdue };
         if let Some(decision) = decided {
-            held = self.flows(&decision.asked, release_m3s, &profile, date);
+            held = self.flows(&self.site, &decision.asked, release_m3s, &profile, date);
             self.asked = Some(decision.asked.clone());
             self.run.decisions.push(decision);
-            self.overdue = false;
+            self.overdue = None;
         }
         let (gates, drawn) = match held {
             Some((Flowing { setting, drawn, .. }, _)) => (setting.gates, drawn),
@@ -346,6 +239,7 @@ impl<'a> Going<'a> {
             return self.end(date, "what is set gives no water".into(), None);
         }
         self.last_c = left.map(|left| left.temperature_c).or(self.last_c);
+        self.widen(date, left.map(|left| left.temperature_c));
         self.run.days.push(SeasonDay {
             date,
             pool_m: self.layers.pool_m(&self.site.pool),
@@ -358,6 +252,15 @@ impl<'a> Going<'a> {
             balance: stepped.balance,
             overturned: stepped.overturned,
         });
+    }
+
+    /// What a day of decision releases is within reach of it: the pool of the day differs a little from its morning's.
+    fn widen(&mut self, date: NaiveDate, release_c: Option<f64>) {
+        let decision = self.run.decisions.last_mut().filter(|decision| decision.date == date);
+        let range = decision.and_then(|decision| decision.attainable_c.as_mut());
+        if let (Some([low, high]), Some(release_c)) = (range, release_c) {
+            (*low, *high) = (low.min(release_c), high.max(release_c));
+        }
     }
 
     /// What arrives at the points of the river, where there are any.
@@ -377,10 +280,4 @@ impl<'a> Going<'a> {
     pub(super) fn end(&mut self, date: NaiveDate, words: String, check: Option<Check>) {
         self.run.ended = Some(Ended { date, words, check });
     }
-}
-
-fn decision(date: NaiveDate, why: Why, chosen: Chosen) -> Decision {
-    let Chosen { asked, moves, moved, attainable_c, past } = chosen;
-    let Moves { count, crew_hours, lead_days, .. } = moves;
-    Decision { date, why, asked, moves: count, moved, crew_hours, lead_days, attainable_c, past }
 }

@@ -7,6 +7,7 @@ use chrono::NaiveDate;
 use crate::mix::limits::Move;
 use crate::site::Site;
 
+use super::reached::SAME_C;
 use super::run::{Run, SeasonDay, Setup};
 use super::tally::{Score, TargetTally, tallies};
 use super::{beware, cold, gates, reached, stages};
@@ -70,6 +71,42 @@ impl Exhausted {
     }
 }
 
+/// A stretch of days of decision on which no allowed mix reaches the high of the target at the dam.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Spell {
+    /// Its first day of decision.
+    pub from: NaiveDate,
+    /// Its last, of those on which a rule asks.
+    pub to: NaiveDate,
+    /// The first after it on which a mix reaches it again.
+    pub until: Option<NaiveDate>,
+    /// How far the coldest mix lies above at most, C.
+    pub most_c: f64,
+}
+
+/// On which days of a stretch a gate can be opened to the widest of its positions.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Fully {
+    /// On all of them.
+    Always,
+    /// On none.
+    Never,
+    /// From the first of these to the last.
+    Within(NaiveDate, NaiveDate),
+}
+
+impl Fully {
+    /// Of the days of a stretch, each with whether it can.
+    pub(super) fn of<'a>(days: impl Iterator<Item = &'a (NaiveDate, bool)> + Clone) -> Self {
+        let mut can = days.clone().filter(|day| day.1).map(|day| day.0);
+        match can.next() {
+            None => Self::Never,
+            Some(_) if days.clone().all(|day| day.1) => Self::Always,
+            Some(first) => Self::Within(first, can.last().unwrap_or(first)),
+        }
+    }
+}
+
 /// A stretch of days in which a gate can be used.
 #[derive(Debug, Clone, PartialEq)]
 pub struct GateLife {
@@ -81,14 +118,17 @@ pub struct GateLife {
     pub last_day: Option<NaiveDate>,
     /// Why not after the last, and without one why not before the first, by the name of the limit and in words.
     pub reason: Option<(&'static str, String)>,
-    /// The day by which its crew must be told, where it moves on a date and its lead is given.
+    /// The day by which its crew must be told of the move that the last day asks for, as in the calendar of moves; `None`
+    /// where it is not moved then, or needs no notice.
     pub book_by: Option<NaiveDate>,
+    /// On which of these days it can be opened as wide as it goes.
+    pub fully: Fully,
 }
 
 impl GateLife {
     /// A gate that no day has.
     pub(super) fn never(outlet: usize) -> Self {
-        Self { outlet, first_day: None, last_day: None, reason: None, book_by: None }
+        Self { outlet, first_day: None, last_day: None, reason: None, book_by: None, fully: Fully::Never }
     }
 }
 
@@ -99,12 +139,28 @@ pub struct GateMoves {
     pub date: NaiveDate,
     /// Which, in the order of the site.
     pub moved: Vec<Move>,
-    /// The limit that forces it, by name and in words; `None` where it was due.
+    /// The limit that forces it, by name and in words; `None` where none does.
     pub forced: Option<(&'static str, String)>,
+    /// What else called for it; `None` where its time had come, or a limit forces it.
+    pub because: Option<String>,
     /// Crew hours.
     pub crew_hours: f64,
     /// The day by which the crew must be told; `None` where it needs no notice.
     pub book_by: Option<NaiveDate>,
+}
+
+/// An outlet of any flow that is turned between decisions, so that each part keeps its share of the release: no move is
+/// counted for it.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Turned {
+    /// Index of the outlet.
+    pub outlet: usize,
+    /// Days on which it is.
+    pub days: usize,
+    /// The largest change from one day to the next, m3/s.
+    pub most_m3s: f64,
+    /// The day of it.
+    pub date: NaiveDate,
 }
 
 /// What a hard rule at the dam asks of a steady day.
@@ -118,15 +174,18 @@ pub struct Asks {
     pub high_c: Option<f64>,
 }
 
-/// What is within reach on a day of decision.
+/// What is within reach on a day of decision; of the days after it nothing is known to the next.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Reached {
     /// The day.
     pub date: NaiveDate,
-    /// Coldest and warmest release that an allowed mix gives, C; `None` where it was not asked, or no mix is allowed.
+    /// Coldest and warmest release that an allowed mix gives, what is released counted in, C; `None` where it was not
+    /// asked, or no mix is allowed.
     pub attainable_c: Option<[f64; 2]>,
     /// What the rules ask.
     pub asks: Vec<Asks>,
+    /// What called for the decision; `None` where its time had come, or a limit forced it.
+    pub because: Option<String>,
 }
 
 impl Reached {
@@ -143,8 +202,8 @@ impl Reached {
         let [coldest, warmest] = self.attainable_c?;
         match self.range_c() {
             (None, None) => None,
-            (_, Some(high)) if coldest > high => Some(coldest - high),
-            (Some(low), _) if warmest < low => Some(warmest - low),
+            (_, Some(high)) if coldest > high + SAME_C => Some(coldest - high),
+            (Some(low), _) if warmest < low - SAME_C => Some(warmest - low),
             _ => Some(0.0),
         }
     }
@@ -194,10 +253,11 @@ pub struct Outcome {
     pub left: Vec<Left>,
     /// First day of decision on which no allowed mix reaches the high of the target at the required release.
     pub exhausted: Exhausted,
-    /// Last day of decision of that stretch: of those on which a rule asks.
-    pub exhausted_last: Option<NaiveDate>,
-    /// First day of decision after it on which one does again.
-    pub exhausted_until: Option<NaiveDate>,
+    /// Every stretch of days of decision on which none does.
+    pub spells: Vec<Spell>,
+    /// The least room between that high and the coldest release within reach on a day of decision, C, below zero where
+    /// that is warmer, and the day; `None` where no day tells.
+    pub nearest: Option<(f64, NaiveDate)>,
     /// First day under a reserve of the site; `None` where it has none.
     pub under_reserve: Option<Exhausted>,
     /// What is within reach on the days of decision.
@@ -207,6 +267,8 @@ pub struct Outcome {
     /// What is moved when, each from what was set as it would flow on the day; nothing is told of the first change where
     /// the setting now is not known.
     pub calendar: Vec<GateMoves>,
+    /// What is turned between decisions without a move that is counted.
+    pub turned: Vec<Turned>,
     /// Every target.
     pub targets: Vec<TargetTally>,
     /// What the season is measured by.
@@ -250,7 +312,7 @@ pub fn outcome(setup: &Setup, run: &Run) -> Outcome {
         })
         .collect();
     let reached = reached::reached(setup, site, run);
-    let out_of_reach = reached::exhausted(&reached, run);
+    let (exhausted, spells) = reached::exhausted(&reached, run);
     let targets = tallies(site, &setup.skies.conditions, days);
     let cold: Vec<ColdWater> = site.cold_water_c.iter().map(|&c| colder(c)).collect();
     let largest = |of: fn(&SeasonDay) -> f64| days.iter().map(of).fold(0.0, f64::max);
@@ -259,12 +321,13 @@ pub fn outcome(setup: &Setup, run: &Run) -> Outcome {
         cold,
         under_reserve: first(&reserves.iter().map(|r| &r.1).collect::<Vec<_>>()),
         reserves,
-        exhausted: out_of_reach.first,
-        exhausted_last: out_of_reach.last,
-        exhausted_until: out_of_reach.until,
+        exhausted,
+        spells,
+        nearest: reached::nearest(&reached),
         reached,
         gates: gates::lives(site, run),
         calendar: gates::moves(site, run),
+        turned: gates::turned(site, run),
         targets,
         score: Score::of(setup, run),
         stages: stages::stages(site, days),

@@ -11,6 +11,7 @@ use chrono::NaiveDate;
 use crate::mix::Gate;
 use crate::problem::{Problem, any_refused};
 use crate::site::{Outage, Site};
+use crate::units::say;
 
 /// One row as read, SI.
 #[derive(Debug, Clone, Default, PartialEq)]
@@ -99,6 +100,13 @@ pub struct Schedule {
     pub changes: Vec<(NaiveDate, Vec<Gate>)>,
 }
 
+impl Schedule {
+    /// What one of a file is called where strategies are named.
+    pub fn called(file: &str) -> String {
+        format!("schedule {}", stem(file))
+    }
+}
+
 impl Plan {
     /// Checks a raw plan against its site. The list holds every refusal, flag and note; `None` when any refuses.
     pub fn check(raw: &RawPlan, site: &Site) -> (Option<Self>, Vec<Problem>) {
@@ -125,6 +133,20 @@ impl Plan {
             notes: problems.clone(),
         };
         (Some(plan), problems)
+    }
+
+    /// Flags a plan by the release whose flows bring the pool above full, from the pool (m) of a date on.
+    pub fn above_full(&self, site: &Site, from: NaiveDate, pool_m: f64) -> Option<Problem> {
+        let (on, most_m3) = volume::above_full(&self.days, site, from, pool_m)?;
+        let words = format!(
+            "from the pool of {from}, {}, its flows bring the pool above full {} on {on}, with {} too much at most: it \
+             spills, or the inflow is too large",
+            say::m(pool_m, 2),
+            say::m(site.pool.full_m, 2),
+            say::m3(most_m3, 0)
+        );
+        let cure = "correct the inflow or the release where no spill is meant";
+        Some(Problem::flag("plan-above-full", words, cure).in_file(&self.file))
     }
 
     /// The first and the last day.

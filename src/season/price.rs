@@ -65,17 +65,37 @@ impl Change {
     }
 }
 
-/// The price of a mix.
+/// What two seasons differ by.
 #[derive(Debug, Clone, Copy, PartialEq)]
-pub struct Price {
+pub struct Difference {
     /// Days by which cold water runs out later; `None` where that is not known. A season in which it does not run out
     /// counts as running out on the day after its last.
     pub exhausted: Option<Change>,
-    /// Whether, from the cast as it is, cold water lasts to the end of the season: with the mix that prices are told
-    /// against, and with this one.
+    /// Whether, from the cast as it is, cold water lasts to the end of the season: with the mix that it is told against,
+    /// and with this one.
     pub lasts: [bool; 2],
+    /// In how many of the casts, members and the cast itself, it is known to run out: in the same order.
+    pub runs_out: [usize; 2],
     /// Days more outside the hard targets; `None` where a season stops before its plan, so that they cannot be counted.
     pub outside: Option<Change>,
+}
+
+impl Difference {
+    /// Whether anything of it is more than can be told.
+    pub fn is_told(&self) -> bool {
+        [self.exhausted, self.outside].into_iter().flatten().any(Change::is_told)
+    }
+}
+
+/// The price of a mix.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Price {
+    /// Against the setting that prices are told against.
+    pub against: Difference,
+    /// Against the first mix of the list, cast by cast.
+    pub than_first: Difference,
+    /// Casts behind it: members and the cast itself.
+    pub casts: usize,
 }
 
 /// What a season comes to, as far as prices go.
@@ -88,9 +108,9 @@ struct Cost {
 
 /// The price of each mix if it is set on the day decided for and held until the next decision as long as no limit
 /// stands against it, the best mix of the day from then on: against the first of them. From the cast to the day decided
-/// for what is set now stays; where that is not known, the first of them. `None` where the caller stops it, or the cast
-/// shows no water.
-pub fn prices(of: &Pricing, mixes: &[&Setting], progress: Progress) -> Option<Vec<Price>> {
+/// for what is set now stays; where that is not known, the first of them. `leader` is the place of the first mix of the
+/// list. `None` where the caller stops it, or the cast shows no water.
+pub fn prices(of: &Pricing, mixes: &[&Setting], leader: usize, progress: Progress) -> Option<Vec<Price>> {
     let columns = of.perturbed.columns().take(PRICE_MEMBERS);
     let perturbed = columns.map(|column| Profile { column: column.clone(), ..of.start.clone() });
     let casts: Vec<Profile> = std::iter::once(of.start.clone()).chain(perturbed).collect();
@@ -108,14 +128,21 @@ pub fn prices(of: &Pricing, mixes: &[&Setting], progress: Progress) -> Option<Ve
     };
     let costs: Vec<Cost> = jobs.par_iter().map(cost).collect::<Option<_>>()?;
     let by_cast: Vec<&[Cost]> = costs.chunks(mixes.len().max(1)).collect();
-    Some((0..mixes.len()).filter_map(|mix| price(&by_cast, mix)).collect())
+    let price = |mix| {
+        Some(Price {
+            against: difference(&by_cast, 0, mix)?,
+            than_first: difference(&by_cast, leader, mix)?,
+            casts: casts.len(),
+        })
+    };
+    Some((0..mixes.len()).filter_map(price).collect())
 }
 
-/// The price of a mix, from the costs of every mix on the cast and on each member. What one member cannot tell has no
-/// range.
-fn price(by_cast: &[&[Cost]], mix: usize) -> Option<Price> {
+/// What a mix differs by from another, from the costs of every mix on the cast and on each member. What one member
+/// cannot tell has no range.
+fn difference(by_cast: &[&[Cost]], from: usize, mix: usize) -> Option<Difference> {
     let pairs: Vec<(Cost, Cost)> =
-        by_cast.iter().filter_map(|costs| Some((*costs.first()?, *costs.get(mix)?))).collect();
+        by_cast.iter().filter_map(|costs| Some((*costs.get(from)?, *costs.get(mix)?))).collect();
     let later = |(base, this): &(Cost, Cost)| Some((this.exhausted? - base.exhausted?).num_days());
     let more = |(base, this): &(Cost, Cost)| Some(i64::from(this.outside?) - i64::from(base.outside?));
     let change = |of: &dyn Fn(&(Cost, Cost)) -> Option<i64>| {
@@ -124,7 +151,15 @@ fn price(by_cast: &[&[Cost]], mix: usize) -> Option<Price> {
         Some(Change::of(*cast, members.iter().copied()))
     };
     let (base, this) = pairs.first()?;
-    Some(Price { exhausted: change(&later), lasts: [base.lasts, this.lasts], outside: change(&more) })
+    let runs_out = |cost: fn(&(Cost, Cost)) -> &Cost| {
+        pairs.iter().map(cost).filter(|cost| cost.exhausted.is_some() && !cost.lasts).count()
+    };
+    Some(Difference {
+        exhausted: change(&later),
+        lasts: [base.lasts, this.lasts],
+        runs_out: [runs_out(|pair| &pair.0), runs_out(|pair| &pair.1)],
+        outside: change(&more),
+    })
 }
 
 /// What comes of holding a mix from the day decided for to the next decision.
@@ -152,7 +187,7 @@ fn held(
     let site = season_site(&setup);
     let reached = reached::reached(&setup, &site, &season);
     let end = season.days.last().and_then(|day| day.date.succ_opt());
-    let (exhausted, lasts) = match reached::exhausted(&reached, &season).first {
+    let (exhausted, lasts) = match reached::exhausted(&reached, &season).0 {
         Exhausted::On(date) => (Some(date), false),
         Exhausted::NotBy(_) => (end, true),
         Exhausted::Unknown(_) => (None, false),

@@ -9,11 +9,13 @@ use crate::mix::Day;
 use crate::site::Site;
 use crate::target::Figure;
 
-use super::outcome::{Asks, Exhausted, Reached};
+use super::called::because;
+use super::outcome::{Asks, Exhausted, Reached, Spell};
 use super::run::{Run, Setup};
 
-/// A release this much warmer than a rule's high is round-off, C (choice).
-const SAME_C: f64 = 1e-9;
+/// A release no farther than this outside a range reaches it, C (choice: half the tenth of a degree shown; the water of a
+/// decision is read to about 0.01 C).
+pub(super) const SAME_C: f64 = 0.05;
 
 /// What every decision could reach, and what the hard rules at the dam ask on its day.
 pub(super) fn reached(setup: &Setup, site: &Site, run: &Run) -> Vec<Reached> {
@@ -23,6 +25,7 @@ pub(super) fn reached(setup: &Setup, site: &Site, run: &Run) -> Vec<Reached> {
             date: decision.date,
             attainable_c: decision.attainable_c,
             asks: asks(setup, site, decision.date),
+            because: because(site, decision),
         })
         .collect()
 }
@@ -44,45 +47,52 @@ fn asks(setup: &Setup, site: &Site, date: NaiveDate) -> Vec<Asks> {
     day.rules(site).iter().filter_map(of_dam).collect()
 }
 
-/// A stretch without reach.
-#[derive(Debug, Clone, PartialEq)]
-pub(super) struct OutOfReach {
-    /// Its first day of decision, on which no allowed mix comes down to the high of a hard rule at the dam.
-    pub(super) first: Exhausted,
-    /// Its last.
-    pub(super) last: Option<NaiveDate>,
-    /// The first after it on which one does again.
-    pub(super) until: Option<NaiveDate>,
-}
-
-/// The first stretch of days of decision on which no allowed mix comes down to the high of a hard rule at the dam; days
-/// on which no rule asks are passed over. Autumn cools what summer spent, so it may end.
-pub(super) fn exhausted(reached: &[Reached], run: &Run) -> OutOfReach {
-    let never = |first| OutOfReach { first, last: None, until: None };
+/// The first day of decision on which no allowed mix comes down to the high of a hard rule at the dam, and every such
+/// stretch; days on which no rule asks are passed over. Autumn cools what summer spent, so that one may end.
+pub(super) fn exhausted(reached: &[Reached], run: &Run) -> (Exhausted, Vec<Spell>) {
+    let spells = spells(reached);
     let Some(end) = run.days.last().map(|day| day.date) else {
-        return never(Exhausted::Unknown("the season has no day".to_owned()));
+        return (Exhausted::Unknown("the season has no day".to_owned()), spells);
     };
-    let told: Vec<(NaiveDate, bool)> =
-        reached.iter().filter_map(|one| Some((one.date, out_of_reach(one)?))).collect();
-    let first = told.iter().position(|(_, out)| *out);
-    match (first, &run.ended) {
-        (Some(first), _) => {
-            let from = &told[first..];
-            let last = from.iter().take_while(|(_, out)| *out).last().map(|(date, _)| *date);
-            let until = from.iter().find(|(_, out)| !out).map(|(date, _)| *date);
-            OutOfReach { first: Exhausted::On(told[first].0), last, until }
-        }
-        (None, Some(ended)) => never(Exhausted::Unknown(format!("the season stops on {}", ended.date))),
-        (None, None) if told.is_empty() => {
+    let first = match (spells.first(), &run.ended) {
+        (Some(spell), _) => Exhausted::On(spell.from),
+        (None, Some(ended)) => Exhausted::Unknown(format!("the season stops on {}", ended.date)),
+        (None, None) if reached.iter().all(|one| room_c(one).is_none()) => {
             let words = "no hard rule at the dam bounds the temperature from above on a day of decision";
-            never(Exhausted::Unknown(words.to_owned()))
+            Exhausted::Unknown(words.to_owned())
         }
-        (None, None) => never(Exhausted::NotBy(end)),
-    }
+        (None, None) => Exhausted::NotBy(end),
+    };
+    (first, spells)
 }
 
-/// Whether the coldest mix of a day of decision is too warm for a hard rule; `None` where no rule or no range tells.
-fn out_of_reach(one: &Reached) -> Option<bool> {
-    let high_c = one.asks.iter().filter_map(|asks| asks.high_c).reduce(f64::min)?;
-    Some(one.attainable_c?[0] > high_c + SAME_C)
+fn spells(reached: &[Reached]) -> Vec<Spell> {
+    let mut out: Vec<Spell> = Vec::new();
+    for (date, room_c) in rooms(reached) {
+        let open = out.last_mut().filter(|spell| spell.until.is_none());
+        match (open, room_c < -SAME_C) {
+            (Some(spell), true) => (spell.to, spell.most_c) = (date, spell.most_c.max(-room_c)),
+            (None, true) => out.push(Spell { from: date, to: date, until: None, most_c: -room_c }),
+            (Some(spell), false) => spell.until = Some(date),
+            (None, false) => {}
+        }
+    }
+    out
+}
+
+/// The least room between the high of a hard rule at the dam and the coldest release within reach, C, below zero where
+/// that is warmer, and its day of decision; the first of equals. `None` where no day tells.
+pub(super) fn nearest(reached: &[Reached]) -> Option<(f64, NaiveDate)> {
+    let least = |least: (NaiveDate, f64), one: (NaiveDate, f64)| if one.1 < least.1 { one } else { least };
+    rooms(reached).reduce(least).map(|(date, room_c)| (room_c, date))
+}
+
+fn rooms(reached: &[Reached]) -> impl Iterator<Item = (NaiveDate, f64)> + '_ {
+    reached.iter().filter_map(|one| Some((one.date, room_c(one)?)))
+}
+
+/// How far the coldest mix of a day of decision lies under the high of the hard rules, C; `None` where no rule or no
+/// range tells.
+fn room_c(one: &Reached) -> Option<f64> {
+    Some(one.range_c().1? - one.attainable_c?[0])
 }

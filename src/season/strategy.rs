@@ -22,22 +22,16 @@ pub(super) enum Wants {
     These(Asked),
 }
 
-/// The name of what chooses the gates.
-pub(super) fn name(choosing: &Choosing) -> &'static str {
-    match choosing {
-        Choosing::By(strategy) => strategy.name(),
-        Choosing::Schedule(_) => "schedule",
-        Choosing::Aims(_) | Choosing::Found(_) => Strategy::Thrift.name(),
-        Choosing::Held(..) => "held",
+impl Choosing {
+    /// Its name.
+    pub fn name(&self) -> String {
+        match self {
+            Self::By(strategy) => strategy.name().to_owned(),
+            Self::Schedule(of) => Schedule::called(&of.file),
+            Self::Aims(_) | Self::Found(_) => Strategy::Thrift.name().to_owned(),
+            Self::Held(..) => "held".to_owned(),
+        }
     }
-}
-
-/// Whether something is decided on a date because its time has come.
-pub(super) fn is_due(setup: &Setup, decides: NaiveDate, date: NaiveDate) -> bool {
-    let from = if let Choosing::Held(_, until) = &setup.choosing { *until } else { decides };
-    let passed = (date - from).num_days();
-    let is_turn = passed >= 0 && passed % i64::from(setup.decide_days.max(1)) == 0;
-    is_turn || changes_on(setup, date)
 }
 
 /// Whether a schedule changes gates on a date.
@@ -49,7 +43,13 @@ pub(super) fn changes_on(setup: &Setup, date: NaiveDate) -> bool {
 pub(super) fn wants(setup: &Setup, decides: NaiveDate, site: &Site, date: NaiveDate, why: Why) -> Wants {
     let is_forced = matches!(why, Why::Forced(_));
     match &setup.choosing {
-        Choosing::Held(asked, until) if date < *until && !is_forced => Wants::These(asked.clone()),
+        Choosing::Held(asked, until) if date < *until && !is_forced => {
+            if why == Why::Begin {
+                Wants::These(asked.clone())
+            } else {
+                Wants::Stay
+            }
+        }
         Choosing::By(Strategy::Best | Strategy::Thrift) | Choosing::Held(..) => Wants::Best(0.0),
         Choosing::Aims(aims) => Wants::Best(aim_on(aims, decides, setup.decide_days, date)),
         Choosing::By(Strategy::Hold) if is_forced => Wants::Best(0.0),

@@ -1,6 +1,6 @@
 //! What a change from the setting now takes.
 
-use chrono::{Days, NaiveDate};
+use chrono::NaiveDate;
 
 use crate::mix::limits::{self, Before, Check, Move, Moves};
 use crate::mix::{Blend, Setting};
@@ -31,11 +31,6 @@ pub(super) fn change(
     for release in releases {
         moves = limits::change(site, now, before, to, release, out);
     }
-    Change { moves, moved: limits::moved(site, now, to), earliest: after(date, moves.lead_days) }
-}
-
-/// The day so many days after another, a part of one counted as one.
-#[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "a whole number of days, capped")]
-fn after(date: NaiveDate, days: f64) -> Option<NaiveDate> {
-    (days > 0.0).then(|| date.checked_add_days(Days::new(days.ceil().clamp(0.0, 36_500.0) as u64)))?
+    let earliest = limits::notice(moves.lead_days).and_then(|days| date.checked_add_days(days));
+    Change { moves, moved: limits::moved(site, now, to), earliest }
 }

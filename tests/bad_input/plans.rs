@@ -336,3 +336,50 @@ date,pool_m,inflow_m3s,inflow_temperature_C
     let (_, problems) = read("date,pool_m,inflow_m3s,inflow_temperature_C\n2026-08-01,15,10,18\n");
     assert!(any_refused(&problems) && problems.iter().any(|p| p.kind == "plan-short"));
 }
+
+#[test]
+fn scenario_an_inflow_far_off_the_rows_beside_it_is_asked_about() {
+    let rows = |flows: [f64; 5]| {
+        let dates = ["08-01", "08-11", "08-21", "08-31", "09-10"];
+        let rows = dates.iter().zip(flows).map(|(date, flow)| format!("2026-{date},10,{flow},18\n"));
+        "date,release_m3s,inflow_m3s,inflow_temperature_C\n".to_owned() + &rows.collect::<String>()
+    };
+    let flags = |flows| {
+        let (plan, problems) = read(&rows(flows));
+        assert!(plan.is_some(), "asked about, not refused");
+        let flags = problems.into_iter().filter(|p| p.kind == "plan-spike");
+        flags.map(|p| (p.place.line.unwrap(), p.to_string())).collect::<Vec<_>>()
+    };
+    let lines = |flows| flags(flows).into_iter().map(|flag| flag.0).collect::<Vec<_>>();
+    let slipped = flags([7.2, 5.6, 48.0, 4.6, 4.7]);
+    assert_eq!(slipped.len(), 1);
+    assert_eq!(
+        slipped[0].1,
+        "plans/p.csv:4: flag: inflow 48.00 m3/s stands far off that of the rows beside it, 5.60 m3/s and 4.60 m3/s; \
+         correct it where a figure slipped; a flood of a few days needs rows for its rise and fall"
+    );
+    assert_eq!(lines([72.0, 5.6, 4.8, 4.6, 4.7]), [2]);
+    assert_eq!(lines([7.2, 5.6, 4.8, 4.6, 0.47]), [6]);
+    assert_eq!(lines([7.2, 5.6, 0.48, 4.6, 4.7]), [4]);
+    // a river that falls through the summer, and one that dries up
+    assert_eq!(lines([40.0, 12.0, 4.0, 1.5, 0.5]), Vec::<usize>::new());
+    assert_eq!(lines([5.0, 2.0, 0.0, 0.0, 4.0]), Vec::<usize>::new());
+    assert_eq!(lines([5.0, 5.0, 24.9, 5.0, 5.0]), Vec::<usize>::new());
+}
+
+#[test]
+fn scenario_a_plan_by_the_release_that_fills_the_pool_above_full_is_flagged() {
+    let dam = dam();
+    // 1 km2: 10 m3/s more in than out are 0.864 m a day
+    let text = "date,release_m3s,inflow_m3s,inflow_temperature_C\n2026-08-01,5,15,18\n2026-08-11,5,15,18\n";
+    let plan = plan(&source(text), &dam).0.unwrap();
+    let day = |text: &str| text.parse().unwrap();
+    let flag = |from: &str, pool_m: f64| plan.above_full(&dam, day(from), pool_m).map(|p| p.to_string());
+    assert_eq!(flag("2026-08-01", 10.0), None, "eleven days are 9.504 m");
+    let told = flag("2026-08-01", 15.0).unwrap();
+    assert!(told.starts_with("plans/p.csv: flag: from the pool of 2026-08-01, 15.00 m, its flows"), "{told}");
+    assert!(told.contains("above full 20.00 m on 2026-08-06, with 4504000 m3 too much at most"), "{told}");
+    // ten days before its first row hold its first flows; from its middle on only what is left counts
+    assert!(flag("2026-07-22", 10.0).unwrap().contains("on 2026-08-02"));
+    assert_eq!(flag("2026-08-08", 15.0), None);
+}

@@ -159,9 +159,15 @@ fn scenario_the_text_says_what_the_data_say_and_never_more() {
     let moves = answer["moves"].as_u64().unwrap();
     assert!(text.contains("2025-07-14 to 2025-08-26; plan steady"), "{text}");
     assert!(text.contains("steady, middling, best"), "{text}");
-    let [worst, oxygen] = [&score["worst_c"], &answer["oxygen_min_mg_l"]].map(number);
-    let figures = format!("{} d {worst:.1} {oxygen:.1} {moves}", score["days_outside"]);
-    assert!(text.contains(&figures), "{text}");
+    assert!(
+        text.contains(&format!(
+            "{:.1} {} d {:.0} {moves}",
+            number(&score["worst_c"]),
+            score["days_outside"],
+            number(&score["degree_days_outside"])
+        )),
+        "{text}"
+    );
     let first = &answer["cold_water"][0]["days"][18];
     let [usable, all] = ["usable_m3", "total_m3"].map(|key| format!("{:.2} hm3", number(&first[key]) / 1e6));
     assert!(text.contains("2025-08-01") && text.contains(&usable) && text.contains(&all), "{text}");
@@ -179,56 +185,6 @@ fn scenario_the_text_says_what_the_data_say_and_never_more() {
 }
 
 #[test]
-fn scenario_a_table_has_a_row_a_day_with_names_and_units() {
-    let folder = usual();
-    let arguments = ["season", folder.named(), "--on", "2025-07-14T10:30", "--csv"];
-    let table = run(&arguments);
-    assert_eq!(table.code, Some(0), "{}", table.err);
-    let answer = season(&folder, &[]);
-    let mut rows = csv::Reader::from_reader(table.out.as_bytes());
-    let head: Vec<String> = rows.headers().unwrap().iter().map(str::to_owned).collect();
-    assert_eq!(head[..5], ["date", "pool_m", "inflow_m3s", "release_m3s", "release_C"]);
-    let column =
-        |name: &str| head.iter().position(|h| h == name).unwrap_or_else(|| panic!("{name} in {head:?}"));
-    let rows: Vec<csv::StringRecord> = rows.records().map(Result::unwrap).collect();
-    assert_eq!(rows.len(), 44);
-    let figure = |row: usize, name: &str| rows[row][column(name)].parse::<f64>().unwrap();
-    for row in [0, 20, 43] {
-        let day = &answer["days"][row];
-        assert_abs_diff_eq!(
-            figure(row, "release_C"),
-            number(&day["release"]["temperature_c"]),
-            epsilon = 1e-3
-        );
-        assert_abs_diff_eq!(figure(row, "pool_m"), number(&day["pool_m"]), epsilon = 1e-3);
-        assert_abs_diff_eq!(
-            figure(row, "below_12.0C_usable_m3"),
-            number(&day["cold_water_m3"]),
-            epsilon = 1e-3
-        );
-        assert_abs_diff_eq!(
-            figure(row, "Ford C"),
-            number(&day["points"][0]["temperature_c"]),
-            epsilon = 1e-3
-        );
-    }
-    assert_eq!(&rows[3][column("attainable_low_C")], "", "what is missing is empty");
-    let customary = run(&[&arguments[..], &["--units", "us"]].concat()).out;
-    assert!(customary.starts_with("date,pool_ft,inflow_cfs,release_cfs,release_F,"), "{customary}");
-    run(&[&arguments[..], &["--json"]].concat()).failed_with(2);
-}
-
-#[test]
-fn scenario_a_name_in_a_table_is_no_formula() {
-    let folder = usual();
-    let text = fs::read_to_string(folder.site_file()).unwrap();
-    let text = with(&text, "name: Ford", "name: \"=1+1, \\\"x\\\"\"");
-    fs::write(folder.site_file(), with(&text, "point: Ford", "point: \"=1+1, \\\"x\\\"\"")).unwrap();
-    let table = run(&["season", folder.named(), "--on", "2025-07-14T10:30", "--csv"]);
-    assert!(table.out.lines().next().unwrap().contains(",\"'=1+1, \"\"x\"\" C\","), "{}", table.out);
-}
-
-#[test]
 fn scenario_what_cannot_be_understood_names_what_there_is() {
     let folder = usual();
     let fails = |more: &[&str]| {
@@ -238,7 +194,10 @@ fn scenario_what_cannot_be_understood_names_what_there_is() {
     assert!(fails(&["--case", "wet"]).contains("warm, middling, cool"));
     assert!(fails(&["--strategy", "spend"]).contains("hold, best, thrift"));
     let plans = fails(&["--plan", "late"]);
-    assert!(plans.contains("`late`") && plans.contains("a-steady.csv, b-early.csv"), "{plans}");
+    assert!(
+        plans.contains("`late`") && plans.contains("steady (a-steady.csv), early (b-early.csv)"),
+        "{plans}"
+    );
     assert!(fails(&["--every", "0"]).contains("1 to 366"));
     assert!(fails(&["--every", "soon"]).contains("whole days"));
     assert!(fails(&["--schedule", "none.csv"]).contains("none.csv"));
@@ -263,6 +222,14 @@ fn scenario_a_plan_with_an_error_is_refused_with_line_and_cure() {
         assert!(told.contains(&format!("a.csv:{line}: refused: ")), "{told}");
         assert!(told.lines().all(|l| !l.contains("refused") || l.contains("; ")), "a cure follows: {told}");
     }
+    // by its own name too
+    let bad = with(&with(PLAN, "55.5,20,15", "55.5,,15"), "steady", "mine");
+    let folder = site(&[("a.csv", PLAN), ("4-mine.csv", &bad)]);
+    let at = ["season", folder.named(), "--on", "2025-07-14T10:30", "--plan"];
+    let told = run(&[&at[..], &["mine"]].concat()).failed_with(3).to_owned();
+    assert!(told.contains("4-mine.csv:5: refused: ") && told.contains("tells no inflow; "), "{told}");
+    let told = run(&[&at[..], &["yours"]].concat()).failed_with(2).to_owned();
+    assert!(told.contains("there are mine (4-mine.csv, refused), steady (a.csv); or"), "{told}");
     // all problems at once
     let two = with(&with(PLAN, "2025-08-01,58", "2025-08-01,70"), "55.5,20,15", "55.5,,15");
     let folder = site(&[("a.csv", &two)]);
@@ -369,6 +336,9 @@ fn scenario_a_schedule_solved_in_view_of_its_case_stands_below_the_cases_it_has_
     };
     let best = runs.iter().find(|run| run["strategy"] == "best").unwrap();
     assert!(order(&answer) <= order(best), "never worse than day by day where it was solved");
+    let more_days = order(&answer)[0] < order(best)[0] && order(&answer)[1] > order(best)[1];
+    let said = list(&answer["warnings"]).iter().any(|w| w["kind"] == "worst-before-days");
+    assert_eq!(said, more_days, "{:?} {:?}", order(&answer), order(best));
     let text = told(&[&["season", folder.named(), "--on", "2025-07-14T10:30"], &thrift[..]].concat());
     let at = |what: &str| text.find(what).unwrap_or_else(|| panic!("{what}: {text}"));
     assert!(text.contains("foresight, no evidence"), "{text}");

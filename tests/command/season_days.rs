@@ -40,7 +40,7 @@ fn scenario_days_without_a_release_are_told_as_such() {
     assert!(told(&arguments).contains("9 days not judged (nothing is released)"));
     let table = run(&[&arguments[..], &["--csv"]].concat()).out;
     let row = table.lines().find(|line| line.starts_with("2025-07-26,")).unwrap();
-    assert!(row.contains(",29.4444,,,,,,,,,"), "{row}");
+    assert!(row.contains(",29.4444,,,,,9.0000,14.0000,7.0000,,,"), "{row}");
 }
 
 #[test]
@@ -81,7 +81,11 @@ fn scenario_what_counts_first_can_be_said_and_a_nearer_season_beside_is_told() {
     let arguments = ["season", folder.named(), "--on", "2025-07-14T10:30"];
     let text = told(&[&arguments[..], &["--order", "range,moves"]].concat());
     assert!(text.contains("ordered by range, moves, oxygen, preferred, cold_water"), "{text}");
-    assert!(text.contains("runs out reserve outside worst oxygen moves"), "{text}");
+    assert!(text.contains("runs out reserve worst outside deg.d moves"), "{text}");
+    assert!(text.contains("temperature oxygen least oxygen end pool"), "{text}");
+    // what is released outside the range though a mix within it is allowed
+    let passed_over = "C: oxygen comes first";
+    assert!(told(&arguments).contains(passed_over) && !text.contains(passed_over), "{text}");
     let words = run(&[&arguments[..], &["--order", "cold"]].concat());
     assert!(words.failed_with(2).contains("`cold` is no criterion"));
     // prices go by the order of the list

@@ -5,7 +5,7 @@ use std::fs;
 
 use serde_json::Value;
 
-use crate::river::{list, named, told};
+use crate::river::{list, named, number, told};
 use crate::season::{PLAN, season, site, usual};
 use crate::{CAST, Folder, run, with};
 
@@ -42,7 +42,11 @@ fn scenario_a_season_that_stops_says_so_wherever_its_days_are_counted() {
     let text = in_words(&folder, &[]);
     for piece in [
         "STOPS on 2025-08-10",
-        &format!("steady, middling, best ? - {} d!", answer["score"]["days_outside"]),
+        &format!(
+            "steady, middling, best ? - {:.1} {} d!",
+            number(&answer["score"]["worst_c"]),
+            answer["score"]["days_outside"]
+        ),
         "!: days after its end are not counted: steady, middling, best stops 08-10",
         "left on 2025-08-01: from then to 2025-08-10, when it stops,",
     ] {
@@ -96,7 +100,7 @@ fn scenario_cold_water_runs_out_while_the_deep_gate_is_out() {
     let folder = site(&[("a.csv", &out("2025-08-20")), ("b.csv", &with(&out(""), "steady", "gone"))]);
     let back = season(&folder, &[]);
     let on = back["exhausted_on"].as_str().unwrap();
-    assert!(["2025-08-10", "2025-08-11"].contains(&on), "{on}");
+    assert!(["2025-08-09", "2025-08-10", "2025-08-11"].contains(&on), "{on}");
     assert_eq!(back["exhausted_until"], "2025-08-25");
     let text = in_words(&folder, &[]);
     assert!(text.contains(&format!("from {on} on even the coldest mix allowed is too warm")), "{text}");
@@ -106,10 +110,7 @@ fn scenario_cold_water_runs_out_while_the_deep_gate_is_out() {
     assert_eq!((&gone["exhausted_on"], &gone["exhausted_until"]), (&back["exhausted_on"], &Value::Null));
     let text = in_words(&folder, &["--plan", "gone"]);
     assert!(text.contains("to 2025-08-25, the last day of decision on which a rule asks"), "{text}");
-    assert!(
-        text.contains("it runs out in 3 of 3 cases, first on 2025-08-10 (cool), last on 2025-08-11 ("),
-        "{text}"
-    );
+    assert!(text.contains("it runs out in 3 of 3 cases: on 2025-08-10 (cool), 2025-08-11 ("), "{text}");
 }
 
 #[test]
@@ -183,4 +184,78 @@ fn scenario_a_schedule_of_another_year_is_not_passed_over() {
     );
     assert!(of_kind(&follow("2025-07-20,30,10\n")).unwrap().contains("begins on 2025-07-20"));
     assert_eq!(of_kind(&follow("2025-07-14,30,10\n")), None);
+    assert!(
+        of_kind(&follow("2025-07-01,30,10\n2025-07-14,30,5\n"))
+            .unwrap()
+            .contains("the last row of the schedule is of 2025-07-14: what it sets is held to the end")
+    );
+}
+
+/// Ten days in which far more flows in than is released.
+const FLOOD: &str = "\
+# name: flood
+date,release_m3s,inflow_m3s,inflow_temperature_C
+2025-07-14,30,60,16
+2025-07-20,30,60,16
+2025-07-24,30,60,16
+";
+
+#[test]
+fn scenario_a_pool_above_full_is_told_by_check_and_at_the_head_of_the_season() {
+    let folder = site(&[("a.csv", FLOOD)]);
+    changed(&folder, "full: 62", "full: 60.2");
+    let answer = season(&folder, &[]);
+    let above: Vec<&Value> =
+        list(&answer["days"]).iter().filter(|day| number(&day["pool_m"]) > 60.2 + 0.01).collect();
+    let text = in_words(&folder, &[]);
+    let first = above[0]["date"].as_str().unwrap();
+    let highest = above.iter().map(|day| number(&day["pool_m"])).fold(0.0, f64::max);
+    let said = format!("ABOVE FULL on {} days, from {first} on: {highest:.2} m at most", above.len());
+    assert!(text.contains(&said), "{said}: {text}");
+    let checked = told(&["check", folder.named()]);
+    assert!(
+        checked.contains(
+            "from the pool of 2025-07-14, 60.00 m, its flows bring the pool above full 60.20 m on 2025-07-15"
+        ),
+        "{checked}"
+    );
+    let kept = site(&[("a.csv", &FLOOD.replace(",30,60,", ",30,30,"))]);
+    changed(&kept, "full: 62", "full: 60.2");
+    assert!(!told(&["check", kept.named()]).contains("above full"));
+    assert!(!in_words(&kept, &[]).contains("ABOVE FULL"));
+}
+
+#[test]
+fn scenario_moves_say_why_and_what_they_make_of_the_release() {
+    let folder = site(&[("a.csv", &without("# outage: N1, 2025-07-20, 2025-07-30, hoist\n"))]);
+    let (answer, text) =
+        (season(&folder, &["--strategy", "best"]), in_words(&folder, &["--strategy", "best"]));
+    let days = list(&answer["days"]);
+    let c = |day: &Value| number(&day["release"]["temperature_c"]);
+    let mut told = 0;
+    for decision in list(&answer["decisions"]).iter().filter(|d| !list(&d["moved"]).is_empty()) {
+        let why = match decision["why"].as_str().unwrap() {
+            "begin" => "the first decision",
+            "due" => "due",
+            "forced" => "forced: ",
+            _ => decision["because"].as_str().unwrap(),
+        };
+        let at = days.iter().position(|day| day["date"] == decision["date"]).unwrap();
+        let makes = if at == 0 {
+            String::new()
+        } else {
+            format!("; the release goes from {:.1} to {:.1} C", c(&days[at - 1]), c(&days[at]))
+        };
+        assert!(text.contains(&format!("; {why}")) && text.contains(&makes), "{why}{makes}: {text}");
+        told += usize::from(at > 0);
+    }
+    assert!(told > 0, "a move after the first day");
+    // what is released stands beside what is within reach
+    for decision in list(&answer["decisions"]) {
+        let day = days.iter().find(|day| day["date"] == decision["date"]).unwrap();
+        let [low, high] = [0, 1].map(|i| number(&decision["attainable_c"][i]));
+        let date = &day["date"].as_str().unwrap()[5..];
+        let said = format!("{date} {low:.1} to {high:.1} {:.1} 9.0 to 14.0", c(day));
+        assert!(text.contains(&said), "{said}: {text}");
+    }
 }

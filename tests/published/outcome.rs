@@ -230,16 +230,25 @@ fn scenario_it_runs_out_on_the_first_day_no_mix_comes_down_to_the_high() {
         let told = coldest.iter().enumerate();
         let decisions = told.map(|(i, c)| decision(7 * i as u64, Some([*c, 20.0]))).collect();
         let out = of(&site, days(30), decisions, Vec::new());
-        (out.exhausted, out.exhausted_last, out.exhausted_until)
+        let spells: Vec<_> = out.spells.iter().map(|s| (s.from, s.to, s.until, s.most_c)).collect();
+        (out.exhausted, spells)
     };
-    let from = |from: &str, last: &str, until: Option<&str>| {
-        (Exhausted::On(date(from)), Some(date(last)), until.map(date))
+    let spell = |from: &str, to: &str, until: Option<&str>, most_c: f64| {
+        (date(from), date(to), until.map(date), most_c)
+    };
+    let from = |from: &str, to: &str, until: Option<&str>, most_c: f64| {
+        (Exhausted::On(date(from)), vec![spell(from, to, until, most_c)])
     };
     // 1, 8 and 15 August are the summer rule's (high 12), 22 and 29 the autumn rule's (high 10)
-    assert_eq!(on([12.0, 8.0, 8.0, 10.0, 8.0]), (Exhausted::NotBy(date("2026-08-30")), None, None));
-    assert_eq!(on([8.0, 8.0, 8.0, 10.0, 10.5]), from("2026-08-29", "2026-08-29", None));
-    assert_eq!(on([8.0, 8.0, 8.0, 11.0, 10.0]), from("2026-08-22", "2026-08-22", Some("2026-08-29")));
-    assert_eq!(on([12.5, 12.5, 12.5, 10.5, 9.0]), from("2026-08-01", "2026-08-22", Some("2026-08-29")));
+    assert_eq!(on([12.0, 8.0, 8.0, 10.0, 8.0]), (Exhausted::NotBy(date("2026-08-30")), Vec::new()));
+    assert_eq!(on([8.0, 8.0, 8.0, 10.0, 10.5]), from("2026-08-29", "2026-08-29", None, 0.5));
+    assert_eq!(on([8.0, 8.0, 8.0, 11.0, 10.0]), from("2026-08-22", "2026-08-22", Some("2026-08-29"), 1.0));
+    assert_eq!(on([12.5, 12.5, 12.5, 10.5, 9.0]), from("2026-08-01", "2026-08-22", Some("2026-08-29"), 0.5));
+    let twice = vec![
+        spell("2026-08-01", "2026-08-01", Some("2026-08-08"), 1.0),
+        spell("2026-08-15", "2026-08-22", Some("2026-08-29"), 2.0),
+    ];
+    assert_eq!(on([13.0, 8.0, 12.5, 12.0, 8.0]), (Exhausted::On(begin()), twice));
     let out = of(&site, days(3), vec![decision(0, Some([13.0, 20.0]))], Vec::new());
     assert_eq!(out.reached[0].range_c(), (Some(8.0), Some(12.0)), "a wish bounds nothing");
     assert_abs_diff_eq!(out.reached[0].by_c().unwrap(), 1.0, epsilon = 1e-12);
@@ -255,13 +264,19 @@ fn scenario_gates_are_lost_by_a_falling_pool_and_come_with_a_rising_one() {
         day.pool_m = pool_m;
         day.layers = layers(10.0, pool_m);
     }
-    season[1].gates.push(Gate { outlet: 0, opening: 1.0, flow_m3s: 5.0 });
-    let out = of(&site, season, Vec::new(), Vec::new());
+    // shut on the first day of too little water, as a limit forces it
+    let shut = Decision {
+        moved: vec![Move { outlet: 0, from: 1.0, to: 0.0, from_m3s: 5.0, to_m3s: 0.0 }],
+        lead_days: 10.0,
+        ..decision(2, None)
+    };
+    let out = of(&site, season, vec![shut], Vec::new());
+    assert_eq!(out.calendar[0].book_by, Some(date("2026-07-24")));
     let of_high: Vec<_> = out.gates.iter().filter(|g| g.outlet == 0).collect();
     assert_eq!(of_high.len(), 2);
     assert_eq!((of_high[0].first_day, of_high[0].last_day), (Some(begin()), Some(date("2026-08-02"))));
     assert_eq!(of_high[0].reason.as_ref().unwrap().0, "min_submergence");
-    assert_eq!(of_high[0].book_by, Some(date("2026-07-23")), "open on its last day: ten days before");
+    assert_eq!(of_high[0].book_by, out.calendar[0].book_by, "ten days before it is moved");
     assert_eq!((of_high[1].first_day, of_high[1].last_day), (Some(date("2026-08-05")), None));
     assert_eq!(of_high[1].reason.as_ref().unwrap().0, "min_submergence", "why not before");
     assert_eq!(out.gates.iter().filter(|g| g.outlet == 1).count(), 1);

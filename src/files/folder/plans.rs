@@ -83,7 +83,7 @@ impl ListedPlan {
         );
         let cure = "give each plan a `# name` of its own";
         let mut flag = Problem::flag("name-twice", words, cure).in_file(&self.file);
-        flag.place.line = self.source.as_ref().and_then(|source| name_line(&source.text));
+        flag.place.line = self.source.as_ref().and_then(|source| Some(name_of(&source.text)?.0));
         plan.name = name;
         plan.notes.push(flag.clone());
         self.problems.push(flag);
@@ -94,8 +94,24 @@ impl ListedPlan {
     fn is_named(&self, name: &str) -> bool {
         let base = base(&self.file);
         let stem = base.rsplit_once('.').map_or(base, |(stem, _)| stem);
-        [self.file.as_str(), base, stem].contains(&name)
-            || self.plan.as_ref().is_some_and(|plan| plan.name == name)
+        [self.file.as_str(), base, stem].contains(&name) || self.name() == Some(name)
+    }
+
+    /// The name it gives itself, also where it is refused.
+    fn name(&self) -> Option<&str> {
+        let told = || name_of(&self.source.as_ref()?.text).map(|(_, name)| name);
+        self.plan.as_ref().map_or_else(told, |plan| Some(&plan.name))
+    }
+
+    /// Its name with its file, and whether it is refused, for a list.
+    fn listed(&self) -> String {
+        let base = base(&self.file);
+        let refused = if self.plan.is_none() { ", refused" } else { "" };
+        match self.name() {
+            Some(name) => format!("{name} ({base}{refused})"),
+            None if refused.is_empty() => base.to_owned(),
+            None => format!("{base} (refused)"),
+        }
     }
 }
 
@@ -124,7 +140,7 @@ impl Folder {
             let source = text::read(Path::new(named), Format::Csv);
             return Ok(ListedPlan::of(self, named.to_owned(), source).apart(self.plans()));
         }
-        let known: Vec<String> = self.plans().iter().map(|listed| base(&listed.file).to_owned()).collect();
+        let known: Vec<String> = self.plans().iter().map(ListedPlan::listed).collect();
         Err(unknown("plan", named, PLANS, &known))
     }
 
@@ -138,12 +154,15 @@ impl Folder {
             Some((_, source)) => source?,
             None if Path::new(named).is_file() => text::read(Path::new(named), Format::Csv)?,
             None => {
-                let all = self.csv_sources(SCHEDULES, |_| true);
-                let known: Vec<String> = all.iter().map(|(file, _)| base(file).to_owned()).collect();
-                return Err(unknown("gate schedule", named, SCHEDULES, &known));
+                return Err(unknown("gate schedule", named, SCHEDULES, &self.schedules()));
             }
         };
         Ok(self.read_schedule(source))
+    }
+
+    /// Files of the gate schedules of the folder, without their folder, in order.
+    pub fn schedules(&self) -> Vec<String> {
+        self.csv_sources(SCHEDULES, |_| true).iter().map(|(file, _)| base(file).to_owned()).collect()
     }
 
     /// The gate schedule of the folder whose file is called as that of a plan; `None` where there is none.
@@ -155,6 +174,28 @@ impl Folder {
     fn read_schedule(&self, source: Source) -> ReadSchedule {
         let (schedule, problems) = schedule(&source, &self.site);
         ReadSchedule { schedule: schedule.map(Arc::new), problems, source }
+    }
+
+    /// What is to be said of every plan of the folder, also where its flows bring the pool above full from the newest
+    /// cast that is not later than its days.
+    pub fn plans_said(&self) -> Vec<Problem> {
+        let casts: Vec<(NaiveDate, f64)> = self
+            .casts()
+            .iter()
+            .filter_map(|listed| {
+                let profile = self.profile_of(listed).0?;
+                Some((profile.taken?.with_timezone(&self.site.offset).date_naive(), profile.pool_m))
+            })
+            .collect();
+        let said = |listed: &ListedPlan| {
+            let above_full = listed.plan.as_ref().and_then(|plan| {
+                let (_, last) = plan.span()?;
+                let (date, pool_m) = casts.iter().rev().find(|(date, _)| *date < last)?;
+                plan.above_full(&self.site, *date, *pool_m)
+            });
+            listed.problems.iter().cloned().chain(above_full).collect::<Vec<_>>()
+        };
+        self.plans().iter().flat_map(said).collect()
     }
 
     /// What is to be said of every gate schedule of the folder, also where its changes lie on the days of none of its
@@ -200,13 +241,14 @@ impl Folder {
     }
 }
 
-/// The line of a plan that tells its name.
-fn name_line(text: &str) -> Option<usize> {
-    let meta = |line: &str| {
+/// The line of a plan that tells its name, and the name.
+fn name_of(text: &str) -> Option<(usize, &str)> {
+    text.lines().enumerate().find_map(|(before, line)| {
         let (key, value) = line.trim_start().strip_prefix('#')?.split_once(':')?;
-        Some(key.trim().eq_ignore_ascii_case("name") && !value.trim().is_empty())
-    };
-    text.lines().position(|line| meta(line) == Some(true)).map(|before| before + 1)
+        let value = value.trim();
+        let is_name = key.trim().eq_ignore_ascii_case("name") && !value.is_empty();
+        is_name.then_some((before + 1, value))
+    })
 }
 
 fn unknown(what: &str, named: &str, folder: &str, known: &[String]) -> Problem {

@@ -15,7 +15,7 @@ use crate::site::Site;
 use crate::units::Dimension;
 
 pub use gates::{head, level, passing, still, well};
-pub use moves::{Move, Moves, is_moved, moved, moves};
+pub use moves::{Move, Moves, is_moved, moved, moves, notice};
 pub use unchecked::not_checked;
 pub use whole::{Before, Whole, change, change_times, whole};
 

@@ -1,5 +1,7 @@
 //! What has to be moved from the setting now to another, and what that takes.
 
+use chrono::Days;
+
 use crate::intake;
 use crate::mix::Setting;
 use crate::site::{Outlet, SAME_OPENING, Site};
@@ -20,6 +22,12 @@ pub struct Moves {
     pub crew_hours: f64,
     /// Longest notice that a move needs, days.
     pub lead_days: f64,
+}
+
+/// Days of notice that a crew needs, a part of one counted as one; `None` where it needs none.
+#[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "a whole number of days, capped")]
+pub fn notice(lead_days: f64) -> Option<Days> {
+    (lead_days > 0.0).then(|| Days::new(lead_days.ceil().clamp(0.0, 36_500.0) as u64))
 }
 
 /// One gate that is to be moved.

@@ -57,6 +57,21 @@ impl Check {
         format!("{}{}: {words}{reason}", self.rule.name(), self.of_words(site))
     }
 
+    /// The check as a sentence of a calendar: why a gate cannot be used under a pool, without the name of the limit.
+    pub fn plain(&self, site: &Site) -> String {
+        let name = self.of.name(site).unwrap_or_default();
+        match self.rule {
+            Rule::MinSubmergence => {
+                let [found, bound] = [self.found, self.bound].map(|m| self.said(m));
+                format!("too little water above `{name}`: {found}, {bound} required")
+            }
+            Rule::Dry => {
+                format!("`{name}` lies above the pool, its opening at {}", self.said(self.bound))
+            }
+            _ => self.words(site),
+        }
+    }
+
     /// The room left of a limit that is kept, quantities in the reader's units; `None` where nothing bounds it.
     pub fn spare(&self) -> Option<String> {
         (self.room.is_finite() && !self.broken()).then(|| self.said(self.room))

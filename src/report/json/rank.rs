@@ -13,7 +13,7 @@ use crate::units::{System, in_system};
 use super::rank_shape::{
     AskedJson, BinsJson, BlockAskedJson, BlockJson, ChangeJson, LeastJson, LostJson, MixedJson, NearestJson,
     NothingFitsJson, PocketJson, PriceJson, PricedJson, PricesJson, RankJson, RankedJson, RejectedJson,
-    RootJson, SplitJson, UnsureJson, WholeDayJson,
+    RootJson, SplitJson, ThanFirstJson, UnsureJson, WholeDayJson,
 };
 use super::shape::SettingJson;
 use super::targets::{conflicts, points, targets};
@@ -28,10 +28,20 @@ pub fn rank(context: &Context, answer: &RankAnswer) -> String {
 /// The answer of `rank` with what its mixes cost by the end of the season.
 pub fn rank_priced(context: &Context, answer: &RankAnswer, prices: &Prices) -> String {
     let change = |c: Change| ChangeJson { days: c.days, range: [c.range.0, c.range.1], told: c.is_told() };
-    let one = |price: &Price| PriceJson {
-        exhausted_later: price.exhausted.map(change),
-        days_outside_more: price.outside.map(change),
-        lasts: price.lasts[1],
+    let one = |price: &Price| {
+        let (against, first) = (&price.against, &price.than_first);
+        PriceJson {
+            exhausted_later: against.exhausted.map(change),
+            days_outside_more: against.outside.map(change),
+            lasts: against.lasts[1],
+            runs_out_in: against.runs_out[1],
+            runs_out_in_against: against.runs_out[0],
+            casts: price.casts,
+            than_first: ThanFirstJson {
+                exhausted_later: first.exhausted.map(change),
+                days_outside_more: first.outside.map(change),
+            },
+        }
     };
     let season = PricesJson {
         plan: prices.plan.clone(),

@@ -229,6 +229,18 @@ pub(super) struct PriceJson {
     pub(super) days_outside_more: Option<ChangeJson>,
     /// Whether cold water lasts to the end of the season.
     pub(super) lasts: bool,
+    /// Casts in which it runs out, the one taken among them; with what it is priced against; and how many there are.
+    pub(super) runs_out_in: usize,
+    pub(super) runs_out_in_against: usize,
+    pub(super) casts: usize,
+    /// The same changes against the first mix of the list, cast by cast.
+    pub(super) than_first: ThanFirstJson,
+}
+
+#[derive(Serialize)]
+pub(super) struct ThanFirstJson {
+    pub(super) exhausted_later: Option<ChangeJson>,
+    pub(super) days_outside_more: Option<ChangeJson>,
 }
 
 #[derive(Serialize)]

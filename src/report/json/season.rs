@@ -1,11 +1,13 @@
 //! The answer of `season` as JSON.
 
+use chrono::NaiveDate;
+
 use crate::mix::Setting;
 use crate::problem::harmless;
 use crate::report::text::river::unit_si;
 use crate::season::{
-    ColdDay, ColdWater, Decision, Exhausted, GateLife, Outcome, SeasonDay, StageDate, StageFall, TargetTally,
-    Why,
+    ColdDay, ColdWater, Decision, Exhausted, Fully, GateLife, Outcome, SeasonDay, Spell, StageDate,
+    StageFall, TargetTally, Why,
 };
 use crate::site::Site;
 use crate::tasks::Context;
@@ -14,7 +16,7 @@ use crate::units::{System, in_system};
 
 use super::season_shape::{
     BewareJson, ColdDayJson, ColdJson, DayJson, DecisionJson, GateJson, LeftJson, PointJson, ReleaseJson,
-    ReserveJson, RunJson, ScoreJson, SeasonJson, StageFallJson, StageJson, TargetJson,
+    ReserveJson, RunJson, ScoreJson, SeasonJson, SpellJson, StageFallJson, StageJson, TargetJson,
 };
 use super::{caution, head, moved_gates, setting, warnings, written};
 
@@ -51,10 +53,14 @@ fn run(site: &Site, answer: &SeasonAnswer, of: &SeasonRun) -> RunJson {
         strategy: of.run.strategy.clone(),
         foresight: of.foresight,
         weather_seen: answer.seen(of) != Seen::Nothing,
+        cold_water_below_c: cold.first().map(|water| water.threshold_c),
         days: (of.run.days.iter().enumerate()).map(|(i, d)| day(site, of, d, cold.first(), i)).collect(),
         gates: outcome.gates.iter().map(|g| gate(site, g)).collect(),
         exhausted_on: on(exhausted),
-        exhausted_until: outcome.exhausted_until.map(|date| date.to_string()),
+        exhausted_until: outcome.spells.first().and_then(|spell| spell.until).map(|date| date.to_string()),
+        exhausted: outcome.spells.iter().map(spell).collect(),
+        nearest_c: outcome.nearest.map(|nearest| nearest.0),
+        nearest_on: outcome.nearest.map(|nearest| nearest.1.to_string()),
         exhausted_unknown: unknown(exhausted),
         under_reserve_on: outcome.under_reserve.as_ref().and_then(on),
         targets: targets(site, of),
@@ -145,12 +151,28 @@ fn day(site: &Site, of: &SeasonRun, day: &SeasonDay, cold: Option<&ColdWater>, a
         points: day.points.as_ref().map(arrives),
         cold_water_m3: cold.and_then(|c| c.days.get(at)?.usable_m3),
         attainable_c: decided.and_then(|d| d.attainable_c),
+        outside: outside(site, of, day.date),
         balance_water_m3: day.balance.water_m3.error(),
         balance_heat_j: day.balance.heat_j.error(),
     }
 }
 
+/// Names of the hard targets that a day lies outside of.
+fn outside(site: &Site, of: &SeasonRun, date: NaiveDate) -> Vec<String> {
+    let missed = |told: &&TargetTally| {
+        let marks = told.temperature_days.iter().chain(&told.oxygen_days);
+        marks.into_iter().any(|(day, mark)| *day == date && mark.outside())
+    };
+    let hard = of.outcome.targets.iter().filter(missed).filter_map(|told| site.targets.get(told.target));
+    hard.filter(|rule| !rule.soft).map(|rule| rule.name.clone()).collect()
+}
+
 fn gate(site: &Site, life: &GateLife) -> GateJson {
+    let fully = match life.fully {
+        Fully::Always => life.first_day.map(|first| (first, life.last_day)),
+        Fully::Never => None,
+        Fully::Within(first, last) => Some((first, Some(last))),
+    };
     GateJson {
         outlet: site.outlets.get(life.outlet).map_or_else(String::new, |o| o.name.clone()),
         first_day: life.first_day.map(|d| d.to_string()),
@@ -158,6 +180,17 @@ fn gate(site: &Site, life: &GateLife) -> GateJson {
         reason: life.reason.as_ref().map(|r| r.0),
         text: life.reason.as_ref().map(|r| said(&r.1)),
         book_by: life.book_by.map(|d| d.to_string()),
+        fully_from: fully.map(|days| days.0.to_string()),
+        fully_to: fully.and_then(|days| days.1).map(|d| d.to_string()),
+    }
+}
+
+fn spell(of: &Spell) -> SpellJson {
+    SpellJson {
+        from: of.from.to_string(),
+        to: of.to.to_string(),
+        until: of.until.map(|date| date.to_string()),
+        above_c: of.most_c,
     }
 }
 
@@ -171,6 +204,10 @@ fn targets(site: &Site, of: &SeasonRun) -> Vec<TargetJson> {
             name: rule.name.clone(),
             point: rule.point.clone(),
             case: of.run.case.clone(),
+            low: rule.low_c,
+            preferred: rule.preferred_c,
+            high: rule.high_c,
+            oxygen_min_mg_l: rule.oxygen_min_mg_l,
             days_outside: told.days_outside(),
             degree_days_outside: told.temperature.as_ref().filter(|_| degrees).map(|t| t.sum_outside),
             longest_run: told.longest_run(),
@@ -200,18 +237,23 @@ fn cold_water(cold: &ColdWater) -> ColdJson {
 
 fn decision(site: &Site, outcome: &Outcome, of: &Decision) -> DecisionJson {
     let moves = outcome.calendar.iter().find(|m| m.date == of.date);
-    let asked = outcome.reached.iter().find(|r| r.date == of.date).map(crate::season::Reached::range_c);
+    let reached = outcome.reached.iter().find(|r| r.date == of.date);
+    let asked = reached.map(crate::season::Reached::range_c);
     DecisionJson {
         date: of.date.to_string(),
         why: match of.why {
             Why::Begin => "begin",
             Why::Due => "due",
             Why::Forced(_) => "forced",
+            Why::Rule { .. } => "rule",
+            Why::OutageOver(_) => "outage_over",
+            Why::Crew(_) => "crew",
         },
         limit: match of.why {
             Why::Forced(check) => Some(said(&check.words(site))),
-            Why::Begin | Why::Due => None,
+            _ => None,
         },
+        because: reached.and_then(|on| on.because.clone()),
         attainable_c: of.attainable_c,
         asked_c: asked.map_or([None, None], <[Option<f64>; 2]>::from),
         moves: of.moves,

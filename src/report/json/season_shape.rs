@@ -31,12 +31,19 @@ pub(super) struct RunJson {
     pub(super) foresight: bool,
     /// Solved with this weather in view, under this plan or another.
     pub(super) weather_seen: bool,
+    /// What `cold_water_m3` of the days is colder than: the first threshold of the site.
+    pub(super) cold_water_below_c: Option<f64>,
     pub(super) days: Vec<DayJson>,
     pub(super) gates: Vec<GateJson>,
     /// Null where it does not run out by the end of the season; see `exhausted_unknown`.
     pub(super) exhausted_on: Option<String>,
     /// First day of decision after it on which an allowed mix comes down to the high again.
     pub(super) exhausted_until: Option<String>,
+    /// Every stretch of days of decision on which none does.
+    pub(super) exhausted: Vec<SpellJson>,
+    /// Least room under the high on a day of decision, below zero above it.
+    pub(super) nearest_c: Option<f64>,
+    pub(super) nearest_on: Option<String>,
     pub(super) exhausted_unknown: Option<String>,
     pub(super) under_reserve_on: Option<String>,
     pub(super) targets: Vec<TargetJson>,
@@ -76,6 +83,8 @@ pub(super) struct DayJson {
     pub(super) cold_water_m3: Option<f64>,
     /// On days of decision.
     pub(super) attainable_c: Option<[f64; 2]>,
+    /// Names of the hard targets it lies outside of.
+    pub(super) outside: Vec<String>,
     pub(super) balance_water_m3: f64,
     pub(super) balance_heat_j: f64,
 }
@@ -104,6 +113,17 @@ pub(super) struct GateJson {
     pub(super) reason: Option<&'static str>,
     pub(super) text: Option<String>,
     pub(super) book_by: Option<String>,
+    /// First and last day on which it can be opened as wide as it goes; the last null to the end.
+    pub(super) fully_from: Option<String>,
+    pub(super) fully_to: Option<String>,
+}
+
+#[derive(Serialize)]
+pub(super) struct SpellJson {
+    pub(super) from: String,
+    pub(super) to: String,
+    pub(super) until: Option<String>,
+    pub(super) above_c: f64,
 }
 
 #[derive(Serialize)]
@@ -111,6 +131,11 @@ pub(super) struct TargetJson {
     pub(super) name: String,
     pub(super) point: String,
     pub(super) case: String,
+    /// What it asks, in the unit of its statistic, and its floor of oxygen.
+    pub(super) low: Option<f64>,
+    pub(super) preferred: Option<f64>,
+    pub(super) high: Option<f64>,
+    pub(super) oxygen_min_mg_l: Option<f64>,
     pub(super) days_outside: u32,
     pub(super) degree_days_outside: Option<f64>,
     pub(super) longest_run: u32,
@@ -170,6 +195,8 @@ pub(super) struct DecisionJson {
     pub(super) date: String,
     pub(super) why: &'static str,
     pub(super) limit: Option<String>,
+    /// What called for it where it was neither due nor forced.
+    pub(super) because: Option<String>,
     pub(super) attainable_c: Option<[f64; 2]>,
     pub(super) asked_c: [Option<f64>; 2],
     pub(super) moves: usize,

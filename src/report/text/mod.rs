@@ -15,7 +15,7 @@ use unicode_width::UnicodeWidthStr;
 use crate::problem::{Problem, Weight, harmless};
 use crate::tasks::rank::RankAnswer;
 use crate::tasks::river::RiverAnswer;
-use crate::tasks::season::{LearnAnswer, Prices, SeasonAnswer};
+use crate::tasks::season::{LearnAnswer, NeededAnswer, Prices, SeasonAnswer};
 use crate::tasks::{Context, Freshness, MixAnswer, PoolAnswer};
 use crate::units::{Dimension, System, show};
 
@@ -99,13 +99,22 @@ pub fn learned(context: &Context, answer: &LearnAnswer) -> String {
     out
 }
 
-/// The answer of `check`: every problem, flag and note, and a closing line.
+/// The answer of `season --left`.
+pub fn needed(context: &Context, answer: &NeededAnswer) -> String {
+    let mut out = head(context, &answer.fingerprint);
+    out.push_str(&season::needed::body(context, answer));
+    out.push_str(&wrapped(caution(), 0));
+    out
+}
+
+/// The answer of `check`: every refusal, then every flag, then every note, and a closing line.
 pub fn check(named: &str, problems: &[Problem], system: System) -> String {
     let mut out = String::new();
-    for p in problems {
+    let of = |weight: Weight| problems.iter().filter(move |p| p.weight == weight);
+    for p in [Weight::Refused, Weight::Flag, Weight::Note].into_iter().flat_map(of) {
         let _ = writeln!(out, "{}", p.text(system));
     }
-    let count = |weight: Weight| problems.iter().filter(|p| p.weight == weight).count();
+    let count = |weight: Weight| of(weight).count();
     let _ = writeln!(
         out,
         "{}: {} refused, {} flagged, {} noted",

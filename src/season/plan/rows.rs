@@ -22,6 +22,10 @@ const MOST_SOLIDS_MG_L: f64 = 50_000.0;
 /// Most flow in or out, m3/s (choice: above any river's flood).
 const MOST_FLOW_M3S: f64 = 1e6;
 
+/// So many times the inflow of both rows beside it, or so small a part of it, is asked about (choice: rows are weeks
+/// apart, and a slipped point makes ten times).
+const SPIKE: f64 = 5.0;
+
 /// Tells what is wrong with single rows and with their order.
 pub(super) fn rows(raw: &RawPlan, site: &Site, problems: &mut Vec<Problem>) {
     for row in &raw.rows {
@@ -53,7 +57,31 @@ pub(super) fn rows(raw: &RawPlan, site: &Site, problems: &mut Vec<Problem>) {
         problems.push(Problem::refused("plan-long", words, "make several plans of it"));
     }
     above_full(raw, site, problems);
+    spikes(raw, problems);
     held(raw, problems);
+}
+
+/// Flags rows whose inflow stands far off that of the two rows beside it, of the first and the last row the next two: a
+/// slipped point, or another unit.
+fn spikes(raw: &RawPlan, problems: &mut Vec<Problem>) {
+    let last = raw.rows.len().saturating_sub(1);
+    let inflow = |at: usize| raw.rows.get(at)?.inflow_m3s.filter(|flow| *flow > 0.0);
+    for (at, row) in raw.rows.iter().enumerate() {
+        let beside = match at {
+            0 => [1, 2],
+            at if at == last => [last.saturating_sub(2), last.saturating_sub(1)],
+            at => [at - 1, at + 1],
+        };
+        let (Some(flow), [Some(a), Some(b)]) = (inflow(at), beside.map(inflow)) else { continue };
+        if last < 2 || (flow < SPIKE * a.max(b) && flow * SPIKE > a.min(b)) {
+            continue;
+        }
+        let [told, a, b] = [flow, a, b].map(|flow| say::m3s(flow, 2));
+        let words = format!("inflow {told} stands far off that of the rows beside it, {a} and {b}");
+        let cure =
+            "correct it where a figure slipped; a flood of a few days needs rows for its rise and fall";
+        problems.push(Problem::flag("plan-spike", words, cure).on_line(row.line));
+    }
 }
 
 /// Flags the first row on which the pool stands above full, with how many do.

@@ -83,6 +83,33 @@ fn beyond(release_m3s: f64, site: &Site, what: &str) -> Option<(String, bool)> {
     Some((format!("{what} {told}, {} above release.max {}", flow(release_m3s - max), flow(max)), true))
 }
 
+/// The first day on which a plan by the release brings the pool more than 0.1 m above full, and the volume above full on
+/// the day with most of it, m3: from the pool (m) on a date on, if nothing spills and nothing evaporates. `None` where it
+/// stays below, and of a plan by the pool.
+pub(super) fn above_full(
+    days: &[PlanDay],
+    site: &Site,
+    from: NaiveDate,
+    pool_m: f64,
+) -> Option<(NaiveDate, f64)> {
+    let pool = &site.pool;
+    let (full_m3, told_m3) = (pool.volume_m3(pool.full_m), pool.volume_m3(pool.full_m + FOLLOWS_M));
+    let gain_m3 = |day: &PlanDay| Some((day.inflow_m3s - day.release_m3s?) * DAY_S);
+    let first = days.first()?;
+    // before its first row its first flows hold
+    let gap_days = (first.date - from).num_days().max(0) as f64;
+    let mut volume_m3 = pool.volume_m3(pool_m) + gap_days * gain_m3(first)?;
+    let (mut on, mut most_m3) = (None, 0.0_f64);
+    for day in days.iter().filter(|day| from <= day.date) {
+        volume_m3 += gain_m3(day)?;
+        if volume_m3 > told_m3 {
+            on.get_or_insert(day.date);
+            most_m3 = most_m3.max(volume_m3 - full_m3);
+        }
+    }
+    on.map(|on| (on, most_m3))
+}
+
 /// Holds the pools of a plan that goes by the release against what inflow and release make of them, row by row.
 pub(super) fn follows(raw: &RawPlan, days: &[PlanDay], site: &Site, problems: &mut Vec<Problem>) {
     for (a, b, (from, to), _) in pairs(raw) {

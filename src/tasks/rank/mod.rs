@@ -10,7 +10,7 @@ use std::ops::ControlFlow;
 
 use crate::intake;
 use crate::mix::limits::Before;
-use crate::mix::{Perturbed, Setting, groups};
+use crate::mix::{Asked, Perturbed, Setting, groups, resolve};
 use crate::problem::Problem;
 use crate::rank::{Criterion, Question, Ranking, Stopped, rank as search};
 use crate::units::say;
@@ -201,7 +201,43 @@ pub(super) fn now(
         setting(context, &words)?
     };
     notes.extend(understood.notes);
+    notes.extend(not_of_the_wells(context, &understood.setting));
     Ok(Some(understood.setting))
+}
+
+/// A flow of a gate that the wells make otherwise of the same openings and total, as a share of the total (choice).
+const SHARED_OTHERWISE: f64 = 0.05;
+
+/// Where flows are given that the wells do not make of the openings they go with.
+fn not_of_the_wells(context: &Context, setting: &Setting) -> Option<Problem> {
+    let (site, pool_m) = (context.site(), context.profile.pool_m);
+    let made = resolve(site, &context.profile.column, &groups(site), &Asked::of(site, setting), pool_m);
+    let off: Vec<String> = setting
+        .gates
+        .iter()
+        .filter_map(|gate| {
+            let outlet = site.outlets.get(gate.outlet)?;
+            let total: f64 = setting
+                .gates
+                .iter()
+                .filter(|other| site.outlets.get(other.outlet).is_some_and(|o| o.well == outlet.well))
+                .map(|other| other.flow_m3s)
+                .sum();
+            outlet.well?;
+            let passes =
+                made.gates.iter().find(|other| other.outlet == gate.outlet).map_or(0.0, |g| g.flow_m3s);
+            ((passes - gate.flow_m3s).abs() > SHARED_OTHERWISE * total).then(|| {
+                let [given, passes] = [gate.flow_m3s, passes].map(|flow| say::m3s(flow, 2));
+                format!("{} passes {passes}, not {given}", outlet.name)
+            })
+        })
+        .collect();
+    let words = format!(
+        "the flows of the setting now are not what its wells make of the openings: {}. Today's figures of it go by the \
+         flows as given; mixes, and the days of a season, by what the wells make",
+        off.join(", ")
+    );
+    (!off.is_empty()).then(|| Problem::note("now-split", words))
 }
 
 /// Where as much spills by itself as is wanted.

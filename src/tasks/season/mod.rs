@@ -2,6 +2,7 @@
 
 mod asked;
 mod learn;
+mod needed;
 mod notes;
 mod price;
 mod table;
@@ -19,6 +20,7 @@ use super::{Context, Failure};
 
 pub use asked::SeasonAsked;
 pub use learn::{Dated, LearnAnswer, LearnAsked, learn};
+pub use needed::{CaseNeeded, NeededAnswer, needed};
 pub use price::{Prices, prices};
 
 /// One season of the answer.
@@ -34,6 +36,8 @@ pub struct SeasonRun {
     pub outcome: Outcome,
     /// Whether its schedule was solved on this very case: foresight, and no evidence.
     pub foresight: bool,
+    /// What counts first where the mix of a day is chosen; empty where a schedule or the setting now tells the gates.
+    pub order: Vec<Criterion>,
 }
 
 impl SeasonRun {
@@ -70,6 +74,8 @@ pub struct SeasonAnswer {
     pub decide_days: u32,
     /// What counts first where the mix of a day is chosen.
     pub order: Vec<Criterion>,
+    /// Files of the gate schedules of the folder.
+    pub schedules: Vec<String>,
     /// Plans that were refused, and what was assumed.
     pub notes: Vec<Problem>,
     /// Fingerprint of the inputs, plans and all.
@@ -121,7 +127,9 @@ pub fn season(
     let table = table::Table { context, understood: &understood, now: now.as_ref() };
     let main = table.main(progress)?;
     let others = table.others(&main, progress, &mut notes)?;
+    notes.extend(notes::turned(context, &main));
     notes.extend(notes::nearer(&main, &others, &understood.order));
+    notes.extend(notes::spares(&main, &others));
     if progress(1.0).is_break() {
         return Err(Failure::Stopped);
     }
@@ -132,6 +140,7 @@ pub fn season(
         decides: if now.is_some() { understood.decides } else { understood.begins },
         decide_days: understood.decide_days,
         order: understood.order.clone(),
+        schedules: context.folder.schedules(),
         notes,
         fingerprint: understood.fingerprint.clone(),
     })

@@ -6,7 +6,7 @@ use chrono::Datelike;
 
 use crate::problem::{Problem, Weight};
 use crate::rank::Criterion;
-use crate::season::Choosing;
+use crate::season::{Choosing, Turned};
 use crate::tasks::Context;
 use crate::units::say;
 
@@ -64,6 +64,11 @@ fn schedule(of: &Understood) -> Option<Problem> {
     let (words, cure) = if !dates().any(|date| of.begins <= date && date <= last) {
         let words = format!("no change of the schedule lies in the season, {} to {last}", of.begins);
         (words, "name a schedule of this season")
+    } else if let Some(held) = dates().last().filter(|held| *held <= of.begins && schedule.changes.len() > 1)
+    {
+        let words =
+            format!("the last row of the schedule is of {held}: what it sets is held to the end, {last}");
+        (words, "give rows for the days of the season, or name a schedule of this season")
     } else if let Some(first) = dates().next().filter(|first| *first > of.decides) {
         let words = format!(
             "the schedule begins on {first}: until then what is set now stays, else the best mix of the day"
@@ -98,6 +103,23 @@ fn years(context: &Context, of: &Understood) -> Vec<Problem> {
         out.push(Problem::note("years-left-out", words));
     }
     out
+}
+
+/// What is turned from day to day without a move that is counted.
+pub(super) fn turned(context: &Context, main: &SeasonRun) -> Vec<Problem> {
+    let of = |turned: &Turned| {
+        let name = &context.site().outlets.get(turned.outlet)?.name;
+        let days = if turned.days == 1 { "day" } else { "days" };
+        let words = format!(
+            "`{name}` is turned on {} {days} between decisions so that it keeps its share of the release, by {} at most, \
+             on {}: these are not among the moves",
+            turned.days,
+            say::m3s(turned.most_m3s, 2),
+            turned.date
+        );
+        Some(Problem::note("turned", words))
+    };
+    main.outcome.turned.iter().filter_map(of).collect()
 }
 
 /// Strategies beside the one spoken of, in the same case under the same plan, that come out nearer to the targets: a
@@ -138,6 +160,28 @@ pub(super) fn nearer(main: &SeasonRun, others: &[SeasonRun], order: &[Criterion]
         Some(Problem::note("order-of-the-day", words))
     };
     others.iter().filter(same).filter_map(of).collect()
+}
+
+/// Where thrift is outside on more days than the best of the day: it seeks the least worst miss before the fewest days.
+pub(super) fn spares(main: &SeasonRun, others: &[SeasonRun]) -> Option<Problem> {
+    let best = others.iter().find(|other| {
+        let of = &other.run;
+        other.plan.file == main.plan.file && of.case == main.run.case && of.strategy == "best"
+    })?;
+    let (thrift, best) = (&main.outcome.score, &best.outcome.score);
+    let words = format!(
+        "`thrift` has a worst miss of {} and {} days outside, `best` {} and {}: fewer degrees at worst count before \
+         fewer days",
+        say::dc(thrift.worst_c, 1),
+        thrift.days_outside,
+        say::dc(best.worst_c, 1),
+        best.days_outside
+    );
+    let is_more = main.run.strategy == "thrift"
+        && thrift.lost == best.lost
+        && thrift.worst_c < best.worst_c
+        && thrift.days_outside > best.days_outside;
+    is_more.then(|| Problem::note("worst-before-days", words))
 }
 
 /// A plan beside the one spoken of that is refused, by its first problem.

@@ -68,7 +68,8 @@ pub fn prices(
         // what counts first in the list counts first later
         order: &answer.order,
     };
-    let mut mixes = season::prices(&pricing, &mixes, progress).ok_or(Failure::Stopped)?;
+    let leader = usize::from(now.is_some());
+    let mut mixes = season::prices(&pricing, &mixes, leader, progress).ok_or(Failure::Stopped)?;
     if now.is_some() && !mixes.is_empty() {
         mixes.remove(0);
     }

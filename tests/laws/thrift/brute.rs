@@ -1,5 +1,6 @@
 //! Where every way to set the gates can be tried, thrift finds the best.
 
+use std::collections::BTreeSet;
 use std::sync::Arc;
 
 use chrono::Days;
@@ -13,16 +14,17 @@ use super::tiny::{Of, Tiny, begins};
 fn brute(tiny: &Tiny) -> Score {
     let of = tiny.of;
     let skies = tiny.skies(0.0);
-    let decisions = of.days.div_ceil(of.every);
-    let ways = of.gates.pow(decisions);
+    // decided in its turn, and on the day the rule changes
+    let on: BTreeSet<u32> = (0..of.days).step_by(of.every as usize).chain([of.days / 2]).collect();
+    let ways = of.gates.pow(on.len() as u32);
     let mut best: Option<Score> = None;
     for way in 0..ways {
         let gate = |k: u32| way / of.gates.pow(k) % of.gates;
-        let change = |k: u32| {
+        let change = |(k, day): (u32, &u32)| {
             let gate = Gate { outlet: gate(k), opening: 1.0, flow_m3s: of.release_m3s };
-            (begins() + Days::new(u64::from(k * of.every)), vec![gate])
+            (begins() + Days::new(u64::from(*day)), vec![gate])
         };
-        let schedule = Schedule { file: "way".into(), changes: (0..decisions).map(change).collect() };
+        let schedule = Schedule { file: "way".into(), changes: (0..).zip(&on).map(change).collect() };
         let choosing = Choosing::Schedule(Arc::new(schedule));
         let run = tiny.run(&skies, choosing.clone());
         let score = Score::of(&tiny.setup(&skies, choosing), &run);

@@ -53,14 +53,14 @@ fn law_a_day_without_a_release_fills_the_pool_and_is_not_judged() {
 fn law_what_is_due_without_a_release_is_decided_with_the_next() {
     let tiny = closed();
     let best = tiny.by(&tiny.skies(0.0), Strategy::Best);
-    // due on the fourth and the seventh day, and nothing is released from the fourth to the sixth
+    // due on the fourth and the seventh day, a rule begins on the sixth, and nothing is released from the fourth to it
     let days: Vec<u64> = (0..best.decisions.len()).map(|i| day_of(&best, i)).collect();
     assert_eq!(days, [0, 6, 9]);
     let mut tiny = Tiny::new(OF);
     tiny.plan.days[3].release_m3s = Some(0.0);
     let best = tiny.by(&tiny.skies(0.0), Strategy::Best);
     let days: Vec<u64> = (0..best.decisions.len()).map(|i| day_of(&best, i)).collect();
-    assert_eq!(days, [0, 4, 6, 9], "once, and then in its turn");
+    assert_eq!(days, [0, 4, 5, 6, 9], "once, and then in its turn");
     let hold = tiny.by(&tiny.skies(0.0), Strategy::Hold);
     assert_eq!(hold.days[2].gates.len(), hold.days[4].gates.len());
     assert_eq!(hold.decisions.iter().map(|d| d.moves).sum::<usize>(), 0);

@@ -40,9 +40,9 @@ fn law_hold_never_moves_unless_it_must() {
     let run = tiny.by(&tiny.skies(0.0), Strategy::Hold);
     let moved: Vec<_> = run.decisions.iter().filter(|d| d.moves > 0).collect();
     assert_eq!(moved.len(), 1, "{moved:?}");
-    assert_eq!(moved[0].date, begins() + Days::new(5));
+    assert_eq!(moved[0].date, begins() + Days::new(4), "on its last day in use");
     assert!(matches!(moved[0].why, Why::Forced(check) if check.rule.name() == "outage"));
-    assert!(run.days[5..].iter().all(|day| day.gates.iter().all(|g| format!("G{}", g.outlet) != *name)));
+    assert!(run.days[4..].iter().all(|day| day.gates.iter().all(|g| format!("G{}", g.outlet) != *name)));
 }
 
 #[test]
@@ -97,15 +97,11 @@ fn law_best_decides_every_so_many_days_and_says_what_is_attainable() {
     let tiny = Tiny::new(OF);
     let run = tiny.by(&tiny.skies(0.0), Strategy::Best);
     let due: Vec<i64> = run.decisions.iter().map(|d| (d.date - begins()).num_days()).collect();
-    assert_eq!(due, [0, 3, 6, 9]);
+    assert_eq!(due, [0, 3, 5, 6, 9], "in its turn, and on the day a rule begins");
     for decision in &run.decisions {
         let [low, high] = decision.attainable_c.unwrap();
         let day = run.days.iter().find(|day| day.date == decision.date).unwrap();
-        // what is released over the day differs a little from its morning
-        assert!(
-            (low - 0.3..=high + 0.3).contains(&day.release.unwrap().temperature_c),
-            "{low} {high} {day:?}"
-        );
+        assert!((low..=high).contains(&day.release.unwrap().temperature_c), "{low} {high} {day:?}");
         assert!(low < high);
     }
     let aims = Choosing::Aims(Arc::new(vec![1.0; 4]));

@@ -4,8 +4,10 @@ use chrono::NaiveDate;
 
 use crate::mix::limits::Move;
 use crate::problem::harmless;
-use crate::season::{Decision, GateLife, Reached};
+use crate::rank::Criterion;
+use crate::season::{Decision, Fully, GateLife, Reached, Why};
 use crate::site::Site;
+use crate::target::{DAM, Target};
 use crate::tasks::Context;
 use crate::tasks::season::SeasonRun;
 use crate::units::{Dimension, System, figure, in_system};
@@ -16,8 +18,14 @@ use super::short;
 /// Columns of a name, and of a date in a table.
 const NAME: usize = 16;
 const DATE: usize = 8;
+/// Columns of what is released.
+const RELEASED: usize = 9;
+/// A miss that shows as a tenth, C (choice: half a tenth of the larger degree).
+const SEEN_C: f64 = 0.05;
+/// A miss that is round-off, C (choice).
+const SAME_C: f64 = 1e-9;
 /// Columns of a range.
-const RANGE: usize = 16;
+const RANGE: usize = 13;
 
 /// When every gate can be used: first and last day, why not longer, whom to tell by when.
 pub fn gates(context: &Context, run: &SeasonRun, system: System) -> Vec<String> {
@@ -32,10 +40,25 @@ fn gate(context: &Context, life: &GateLife, system: System) -> String {
     };
     let Some(last) = life.last_day else {
         let before = reason.map_or_else(String::new, |why| format!("; before that: {why}"));
-        return format!("{name:<NAME$}from {first} to the end{before}");
+        return format!("{name:<NAME$}from {first} to the end{}{before}", fully(life));
     };
-    let book = life.book_by.map_or_else(String::new, |by| format!("; open then: {}", book(context, by)));
-    format!("{name:<NAME$}from {first} to {last}; then {}{book}", reason.unwrap_or_default())
+    let book = life.book_by.map_or_else(String::new, |by| format!("; {}", book(context, by)));
+    format!("{name:<NAME$}from {first} to {last}{}; then {}{book}", fully(life), reason.unwrap_or_default())
+}
+
+/// On which days of a stretch a gate can be opened as wide as it goes, where that is not all of them.
+fn fully(life: &GateLife) -> String {
+    let (from, to) = match life.fully {
+        Fully::Always => return String::new(),
+        Fully::Never => return ", never fully open".to_owned(),
+        Fully::Within(from, to) => (from, to),
+    };
+    let ends = [
+        (Some(from) != life.first_day).then(|| format!(" from {from}")),
+        (Some(to) != life.last_day).then(|| format!(" to {to}")),
+    ];
+    let ends: String = ends.into_iter().flatten().collect();
+    format!(", fully open only{ends}")
 }
 
 /// What is moved when, by whom, and by when the crew must be told.
@@ -48,19 +71,42 @@ pub fn moves(context: &Context, run: &SeasonRun, system: System) -> Vec<String> 
         outcome.crew_hours
     )];
     out.extend(outcome.calendar.iter().map(|on| {
-        let forced = on.forced.as_ref().map_or_else(String::new, |(_, words)| {
-            format!("; forced by {}", harmless(&in_system(words, system)))
-        });
+        let forced = on.forced.as_ref().map(|(_, words)| harmless(&in_system(words, system)));
         let by = on.book_by.map_or_else(String::new, |by| format!("; {}", book(context, by)));
         let decision = run.run.decisions.iter().find(|d| d.date == on.date);
         let past =
             decision.and_then(|d| past(site, d, system)).map_or_else(String::new, |p| format!("; {p}"));
-        format!("{}  {}{forced}{by}{past}", on.date, moved_words(site, &on.moved, system))
+        let called = || on.because.as_deref().map(harmless);
+        let why = forced.map(|limit| format!("forced: {limit}")).or_else(called);
+        let why = why.unwrap_or_else(|| decision.map_or("", due).to_owned());
+        let makes = changed(run, on.date, system).map_or_else(String::new, |words| format!("; {words}"));
+        format!("{}  {}; {why}{makes}{by}{past}", on.date, moved_words(site, &on.moved, system))
     }));
     // a limit of the change can be broken where no gate moves
     let still = run.run.decisions.iter().filter(|d| !outcome.calendar.iter().any(|on| on.date == d.date));
     out.extend(still.filter_map(|d| Some(format!("{}  no gate moved; {}", d.date, past(site, d, system)?))));
     out
+}
+
+/// Why something was decided that no limit forced.
+fn due(of: &Decision) -> &'static str {
+    match of.why {
+        Why::Begin => "the first decision",
+        Why::Forced(_) => "forced",
+        Why::Due | Why::Rule { .. } | Why::OutageOver(_) | Why::Crew(_) => "due",
+    }
+}
+
+/// What the gates of a day make of the release of the day before.
+fn changed(run: &SeasonRun, date: NaiveDate, system: System) -> Option<String> {
+    let at = run.run.days.iter().position(|day| day.date == date)?;
+    let (before, after) = (run.run.days.get(at.checked_sub(1)?)?.release?, run.run.days.get(at)?.release?);
+    let unit = system.unit(Dimension::Temperature);
+    let [from, to] = [before, after].map(|release| figure(release.temperature_c, unit, 1));
+    let oxygen = before.oxygen_below_mg_l.zip(after.oxygen_below_mg_l);
+    let oxygen =
+        oxygen.map_or_else(String::new, |(from, to)| format!(", its oxygen from {from:.1} to {to:.1} mg/L"));
+    Some(format!("the release goes from {from} to {to} {}{oxygen}", unit.symbol()))
 }
 
 /// Limits of the change that a decision breaks, since no mix keeps them; `None` where it breaks none.
@@ -81,12 +127,16 @@ fn book(context: &Context, by: NaiveDate) -> String {
     format!("book the crew by {by}{past}")
 }
 
-/// The range within reach on every day of decision against the range asked: a line each.
+/// The range within reach on every day of decision, what is released and the range asked: a line each.
 pub fn reach(run: &SeasonRun, system: System) -> Vec<String> {
     let unit = system.unit(Dimension::Temperature);
     let c = |c: f64| figure(c, unit, 1);
-    let mut out =
-        vec![format!("{:<DATE$}{:<RANGE$}asked at the dam", format!("in {}", unit.symbol()), "within reach")];
+    let mut out = vec![format!(
+        "{:<DATE$}{:<RANGE$}{:<RELEASED$}asked at the dam",
+        format!("in {}", unit.symbol()),
+        "within reach",
+        "released"
+    )];
     out.extend(run.outcome.reached.iter().map(|on| {
         let within =
             on.attainable_c.map_or_else(|| "not known".to_owned(), |[a, b]| format!("{} to {}", c(a), c(b)));
@@ -96,19 +146,68 @@ pub fn reach(run: &SeasonRun, system: System) -> Vec<String> {
             (None, Some(high)) => format!("to {}", c(high)),
             (Some(low), Some(high)) => format!("{} to {}", c(low), c(high)),
         };
-        format!("{:<DATE$}{within:<RANGE$}{asked:<RANGE$}{}", short(on.date), missed(on, system))
+        let released = released_c(run, on.date);
+        let shown = released.map_or_else(|| "nothing".to_owned(), c);
+        let remark =
+            missed(on, system).or_else(|| passed_over(run, on, released?, system)).unwrap_or_default();
+        format!("{:<DATE$}{within:<RANGE$}{shown:<RELEASED$}{asked:<RANGE$}{remark}", short(on.date))
             .trim_end()
             .to_owned()
     }));
     out
 }
 
+/// Temperature of the release of a day, C.
+fn released_c(run: &SeasonRun, date: NaiveDate) -> Option<f64> {
+    run.run.days.iter().find(|day| day.date == date)?.release.map(|release| release.temperature_c)
+}
+
 /// Where no mix reaches the range.
-fn missed(on: &Reached, system: System) -> String {
-    let by = |by: f64| super::super::step(by.abs(), system);
-    match on.by_c() {
-        Some(over) if over > 0.0 => format!("no mix reaches it: ABOVE by {}", by(over)),
-        Some(under) if under < 0.0 => format!("no mix reaches it: BELOW by {}", by(under)),
-        _ => String::new(),
+fn missed(on: &Reached, system: System) -> Option<String> {
+    Some(format!("no mix reaches it: {}", outside(on.by_c()?, system)?))
+}
+
+/// Where one reaches it and what is released does not: what came before it.
+fn passed_over(run: &SeasonRun, on: &Reached, released_c: f64, system: System) -> Option<String> {
+    let (low, high) = on.range_c();
+    let over = high.map_or(0.0, |high| (released_c - high).max(0.0));
+    let under = low.map_or(0.0, |low| (released_c - low).min(0.0));
+    let by = outside(if over > 0.0 { over } else { under }, system)?;
+    let place = |of: Criterion| run.order.iter().position(|criterion| *criterion == of);
+    let why = match (place(Criterion::Oxygen), place(Criterion::Range)) {
+        (Some(oxygen), Some(range)) if oxygen < range && is_short_of_oxygen(run, on.date) => {
+            ": oxygen comes first"
+        }
+        _ => ", though within reach",
+    };
+    Some(format!("{by}{why}"))
+}
+
+/// Whether the oxygen of a day lies below a hard floor, or no more than a step of the order above it.
+fn is_short_of_oxygen(run: &SeasonRun, date: NaiveDate) -> bool {
+    let site = &run.skies.site;
+    let points = site.river.as_ref().map_or(&[][..], |river| &river.points);
+    let Some(day) = run.run.days.iter().find(|day| day.date == date) else { return false };
+    let oxygen = |rule: &Target| {
+        if rule.point == DAM {
+            return day.release?.oxygen_below_mg_l;
+        }
+        let point = points.iter().position(|point| point.name == rule.point)?;
+        day.points.as_ref()?.get(point)?.oxygen_min_mg_l
+    };
+    let hard = site.targets.iter().filter(|rule| !rule.soft);
+    let mut floors = hard
+        .filter(|rule| rule.valid_on(date, site.year_type.as_deref()))
+        .filter_map(|rule| Some((oxygen(rule)?, rule.oxygen_min_mg_l?)));
+    floors.any(|(oxygen, floor)| oxygen < floor + site.bins.oxygen_mg_l)
+}
+
+/// How far outside a range, more than zero above it; `None` where that is less than is shown.
+fn outside(by_c: f64, system: System) -> Option<String> {
+    let by = super::super::step(by_c.abs(), system);
+    let side = if by_c > 0.0 { "ABOVE" } else { "BELOW" };
+    if by_c.abs() >= SEEN_C {
+        return Some(format!("{side} by {by}"));
     }
+    (by_c.abs() > SAME_C).then(|| format!("{side} by a hair"))
 }

@@ -3,56 +3,94 @@
 use std::fmt::Write as _;
 
 use crate::problem::harmless;
-use crate::season::{Exhausted, Outcome, TargetTally};
+use crate::season::{Exhausted, Outcome, Spell, TargetTally};
 use crate::target::{Tally, Target};
 use crate::tasks::Context;
 use crate::tasks::season::{SeasonAnswer, SeasonRun};
-use crate::units::System;
+use crate::units::{Dimension, System, in_system, say, show};
 
 use super::super::river::record::{days_of, tally};
 use super::super::river::{amounts, rules};
 use super::super::volume;
-use super::{at_place, exhausted_words, unjudged};
+use super::{at_place, exhausted_words, short, unjudged};
+
+/// Cases whose dates are all told (choice: a line or two of them).
+const LISTED: usize = 6;
+
+/// Degree-days outside that are told, C days (choice: half of the whole one shown).
+const SEEN_C_DAYS: f64 = 0.5;
+
+/// A pool this little above full is not told of, m (choice: a gauge shows no less).
+const ABOVE_FULL_M: f64 = 0.01;
 
 /// Label and words of each of them.
 pub(super) fn first(context: &Context, answer: &SeasonAnswer, system: System) -> Vec<(&'static str, String)> {
     let outcome = &answer.main.outcome;
-    let mut out = vec![("Runs out", exhausted(outcome))];
+    let mut out = vec![("Runs out", exhausted(outcome, system))];
     out.extend(out_of_reach(answer).map(|words| ("", words)));
     out.extend(reserve(context, outcome, system).map(|words| ("Reserve", words)));
     let targets = targets(context, &answer.main, system);
     for (i, words) in targets.into_iter().enumerate() {
         out.push((if i == 0 { "Outside" } else { "" }, words));
     }
+    out.extend(above_full(context, &answer.main).map(|words| ("POOL", in_system(&words, system))));
     if let Some(ended) = &answer.main.run.ended {
         out.push(("STOPS", format!("on {}: {}", ended.date, harmless(&ended.words))));
     }
     out
 }
 
-/// When no allowed mix reaches a target any more.
-pub fn exhausted(outcome: &Outcome) -> String {
+/// That the pool comes to stand above full, from when on, and how high at most.
+fn above_full(context: &Context, run: &SeasonRun) -> Option<String> {
+    let full_m = context.site().pool.full_m;
+    let above = || run.run.days.iter().filter(|day| day.pool_m > full_m + ABOVE_FULL_M);
+    let first = above().next()?;
+    let highest = above().max_by(|a, b| a.pool_m.total_cmp(&b.pool_m))?;
+    Some(format!(
+        "the pool stands ABOVE FULL on {}, from {} on: {} at most, on {}, full being {}; look at the flows of the plan",
+        days(u32::try_from(above().count()).unwrap_or(u32::MAX)),
+        first.date,
+        say::m(highest.pool_m, 2),
+        highest.date,
+        say::m(full_m, 2)
+    ))
+}
+
+/// When no allowed mix reaches a target any more, by how much, and how near it comes where one does.
+pub fn exhausted(outcome: &Outcome, system: System) -> String {
     let what = "even the coldest mix allowed is too warm for the target at the dam";
-    match (&outcome.exhausted, outcome.exhausted_until) {
-        (Exhausted::On(date), None) => {
-            let last = outcome.exhausted_last.unwrap_or(*date);
-            format!("from {date} on {what}; to {last}, the last day of decision on which a rule asks")
+    match &outcome.exhausted {
+        Exhausted::On(date) => {
+            let spells: Vec<String> = outcome.spells.iter().map(|of| spell(of, system)).collect();
+            format!("from {date} on {what}: {} (looked at on days of decision)", spells.join(", "))
         }
-        (Exhausted::On(date), Some(until)) => {
+        Exhausted::NotBy(date) => {
+            let nearest = outcome.nearest.map_or_else(String::new, |(room_c, on)| {
+                let room = show(room_c.max(0.0), Dimension::TemperatureDifference, system, 2);
+                format!("; the nearest is {on}, with {room} to spare")
+            });
             format!(
-                "from {date} on {what}; from {until} on one is cold enough again (looked at on days of decision)"
+                "not by {date}: on every day of decision a mix is allowed that is cold enough for the target at the \
+                 dam{nearest}"
             )
         }
-        (Exhausted::NotBy(date), _) => {
-            format!(
-                "not by {date}: on every day of decision a mix is allowed that is cold enough for the target at the dam"
-            )
-        }
-        (Exhausted::Unknown(why), _) => format!("not known: {}", harmless(why)),
+        Exhausted::Unknown(why) => format!("not known: {}", harmless(why)),
     }
 }
 
-/// `it runs out in 3 of 3 cases, first on 2026-09-12 (warm), last on 2026-10-03 (cool)`; `None` of a single case.
+/// `09-29 to 10-20, by 0.8 C at most`, and whether one is cold enough again after.
+fn spell(of: &Spell, system: System) -> String {
+    let days =
+        if of.from == of.to { short(of.from) } else { format!("{} to {}", short(of.from), short(of.to)) };
+    let after = of.until.map_or_else(
+        || ", the last day of decision on which a rule asks".to_owned(),
+        |until| format!(", from {} on one is cold enough again", short(until)),
+    );
+    format!("{days} by {}{after}", super::super::step(of.most_c, system))
+}
+
+/// `it runs out in 2 of 3 cases: on 2026-09-12 (warm), 2026-10-03 (cool)`, in the order of the dates; the first and the
+/// last where there are many; `None` of a single case.
 pub fn out_of_reach(answer: &SeasonAnswer) -> Option<String> {
     let cases = answer.cases();
     let known = cases.iter().filter(|r| !matches!(r.outcome.exhausted, Exhausted::Unknown(_))).count();
@@ -68,9 +106,13 @@ pub fn out_of_reach(answer: &SeasonAnswer) -> Option<String> {
     let when = match dates.len() {
         1 => format!("on {} ({})", first.0, first.1),
         _ if first.0 == last.0 => format!("on {} in each of them", first.0),
+        count if count <= LISTED => {
+            let each: Vec<String> = dates.iter().map(|(date, case)| format!("{date} ({case})")).collect();
+            format!("on {}", each.join(", "))
+        }
         _ => format!("first on {} ({}), last on {} ({})", first.0, first.1, last.0, last.1),
     };
-    Some(format!("it runs out in {} of {known} cases, {when}", dates.len()))
+    Some(format!("it runs out in {} of {known} cases: {when}", dates.len()))
 }
 
 /// When the first reserve is gone into; `None` of a site without.
@@ -117,7 +159,7 @@ pub fn targets(context: &Context, run: &SeasonRun, system: System) -> Vec<String
 /// A range's tally, its degree-days with it.
 fn counted(rule: &Target, of: &Tally, unjudged: &str, system: System) -> String {
     let mut out = judged(of, &|by| outside_by(rule, by, false, system), unjudged);
-    if of.sum_outside > 0.0 && rule.is_of_temperature() && !rule.statistic.counts_days() {
+    if of.sum_outside >= SEEN_C_DAYS && rule.is_of_temperature() && !rule.statistic.counts_days() {
         let _ = write!(out, ", {} in all", amounts::degree_days(of.sum_outside, system));
     }
     out

@@ -5,6 +5,7 @@ mod calendar;
 mod cold;
 mod first;
 pub(in crate::report) mod learned;
+pub(super) mod needed;
 pub(super) mod price;
 mod rest;
 mod side;
@@ -14,7 +15,6 @@ use chrono::NaiveDate;
 use unicode_width::UnicodeWidthStr;
 
 use crate::problem::{Problem, Weight, harmless};
-use crate::rank::Criterion;
 use crate::report::flags_of;
 use crate::season::{Exhausted, Run};
 use crate::tasks::Context;
@@ -25,9 +25,10 @@ use super::{labelled, list, wrapped};
 pub use calendar::{gates, moved_words, moves, past, reach};
 pub use cold::{cold, left};
 pub use first::{exhausted, out_of_reach, outside_by, reserve, targets};
+pub use needed::needed;
 pub use price::{asked as priced, lines as prices};
 pub use rest::rest;
-pub use side::{HEADS, Row, columns, meaning, side};
+pub use side::{HEADS, MORE_HEADS, Row, columns, meaning, more_columns, side};
 
 /// Everything but head and caution.
 pub(super) fn body(context: &Context, answer: &SeasonAnswer) -> String {
@@ -109,11 +110,12 @@ fn gates_chosen(context: &Context, answer: &SeasonAnswer) -> String {
     } else {
         ""
     };
-    let order = if answer.order == Criterion::USUAL {
-        String::new()
-    } else {
-        let by: Vec<&str> = answer.order.iter().map(|criterion| criterion.name()).collect();
-        format!(", ordered by {}", by.join(", "))
+    let order = match answer.main.order.as_slice() {
+        [] => String::new(),
+        order => {
+            let by: Vec<&str> = order.iter().map(|criterion| criterion.name()).collect();
+            format!("; on each day of decision the mixes are ordered by {}", by.join(", "))
+        }
     };
     format!(
         "{held}{}, decided every {}{order}{solved}",
@@ -128,7 +130,7 @@ pub fn strategy_words(run: &Run) -> String {
         "hold" => "the setting is held as long as no limit stands against it".to_owned(),
         "best" => "the best mix of the day".to_owned(),
         "thrift" => "release targets that spare cold water".to_owned(),
-        other => format!("gates as {other} says"),
+        other => format!("gates as the {other} says"),
     }
 }
 

@@ -4,25 +4,30 @@ use std::fmt::Write as _;
 
 use crate::problem::harmless;
 use crate::season::{Exhausted, TargetTally};
+use crate::target::Tally;
 use crate::tasks::season::{SeasonAnswer, SeasonRun, Seen};
 use crate::units::{Dimension, System, figure};
 
 use unicode_width::UnicodeWidthStr;
 
-use super::super::{fitted, wrapped};
+use super::super::{fitted, length, wrapped};
 use super::short;
 
 /// Columns of the names together, and of each figure.
 const NAME: usize = 34;
-const CELLS: [usize; 6] = [8, 8, 8, 6, 7, 6];
+const CELLS: [usize; 6] = [8, 8, 6, 8, 7, 6];
+const MORE: [usize; 4] = [12, 8, 13, 10];
 
 /// Columns that a plan has at least.
 const LEAST: usize = 8;
 /// What follows a plan that is cut.
 const CUT: &str = "..";
 
-/// Heads of the figures, in the order of [`Row::cells`].
-pub const HEADS: [&str; 6] = ["runs out", "reserve", "outside", "worst", "oxygen", "moves"];
+/// Heads of the figures, in the order of [`Row::cells`]: from the third on what a season is measured by, in that order.
+pub const HEADS: [&str; 6] = ["runs out", "reserve", "worst", "outside", "deg.d", "moves"];
+
+/// Heads of the further figures, in the order of [`Row::more`].
+pub const MORE_HEADS: [&str; 4] = ["temperature", "oxygen", "least oxygen", "end pool"];
 
 /// One season.
 #[derive(Debug, Clone, PartialEq)]
@@ -31,6 +36,8 @@ pub struct Row {
     pub name: [String; 3],
     /// The figures below [`HEADS`].
     pub cells: [String; 6],
+    /// The figures below [`MORE_HEADS`].
+    pub more: [String; 4],
     /// Solved with this very case in view.
     pub foresight: bool,
     /// What was in view when its gates were chosen.
@@ -56,10 +63,16 @@ pub fn side(answer: &SeasonAnswer, system: System) -> Vec<Row> {
             cells: [
                 date(&outcome.exhausted),
                 outcome.under_reserve.as_ref().map_or_else(|| "-".to_owned(), date),
-                format!("{} d{marks}", score.days_outside),
                 figure(score.worst_c, unit, 1),
-                outcome.least_oxygen.map_or_else(|| "?".to_owned(), |least| format!("{:.1}", least.0)),
+                format!("{} d{marks}", score.days_outside),
+                figure(score.degree_days, unit, 0),
                 outcome.moves.to_string(),
+            ],
+            more: [
+                format!("{} d", days_by(run, |told| told.temperature)),
+                format!("{} d", days_by(run, |told| told.oxygen)),
+                outcome.least_oxygen.map_or_else(|| "?".to_owned(), |least| format!("{:.1}", least.0)),
+                run.run.days.last().map_or_else(|| "?".to_owned(), |day| length(day.pool_m, system)),
             ],
             foresight: run.foresight,
             seen: answer.seen(run),
@@ -73,6 +86,16 @@ pub fn side(answer: &SeasonAnswer, system: System) -> Vec<Row> {
     rows
 }
 
+/// Days outside the hard rules by one of their two parts, summed over the rules.
+fn days_by(run: &SeasonRun, part: fn(&TargetTally) -> Option<Tally>) -> u32 {
+    let hard = run.outcome.targets.iter().filter(|told| is_hard(run, told));
+    hard.filter_map(part).map(|tally| tally.over + tally.under).sum()
+}
+
+fn is_hard(run: &SeasonRun, told: &TargetTally) -> bool {
+    run.skies.site.targets.get(told.target).is_some_and(|rule| !rule.soft)
+}
+
 /// Where a season stops, or ends with a plan before that of the one spoken of.
 fn days_short(answer: &SeasonAnswer, run: &SeasonRun) -> Option<String> {
     let stops = run.run.ended.as_ref().map(|ended| format!("stops {}", short(ended.date)));
@@ -82,13 +105,11 @@ fn days_short(answer: &SeasonAnswer, run: &SeasonRun) -> Option<String> {
 
 /// Whether a hard rule that is valid on days of the season is not judged on any of them.
 fn unjudged(run: &SeasonRun) -> bool {
-    let is_hard =
-        |told: &&TargetTally| run.skies.site.targets.get(told.target).is_some_and(|rule| !rule.soft);
     let parts = |told: &TargetTally| [told.temperature, told.oxygen];
     run.outcome
         .targets
         .iter()
-        .filter(is_hard)
+        .filter(|told| is_hard(run, told))
         .flat_map(parts)
         .flatten()
         .any(|t| t.judged == 0 && t.unknown > 0)
@@ -102,8 +123,8 @@ fn date(of: &Exhausted) -> String {
     }
 }
 
-fn in_columns(cells: [&str; 6]) -> String {
-    let wide: Vec<String> = cells.iter().zip(CELLS).map(|(cell, wide)| format!("{cell:>wide$}")).collect();
+fn in_columns<const N: usize>(cells: [&str; N], wide: [usize; N]) -> String {
+    let wide: Vec<String> = cells.iter().zip(wide).map(|(cell, wide)| format!("{cell:>wide$}")).collect();
     wide.concat()
 }
 
@@ -111,18 +132,42 @@ fn in_columns(cells: [&str; 6]) -> String {
 pub(super) fn table(answer: &SeasonAnswer, system: System) -> String {
     let rows = side(answer, system);
     let mut out = String::new();
-    for line in columns(&rows) {
+    for line in columns(&rows).into_iter().chain([String::new()]).chain(more_columns(&rows)) {
         out.push_str(&line);
         out.push('\n');
     }
     out.push_str(&wrapped(&format!("  {}", meaning(&rows, system)), 2));
+    out.push_str(&wrapped(&format!("  {}", combined(answer)), 2));
     out.push('\n');
     out
 }
 
+/// Which seasons stand beside the one spoken of.
+fn combined(answer: &SeasonAnswer) -> String {
+    let of = &answer.main.run;
+    format!(
+        "run beside plan {}, case {}: this plan in the other cases, the other plans in this case, the other strategies \
+         with this plan in this case; --plan, --case and --strategy ask for any other",
+        harmless(&of.plan),
+        harmless(&of.case)
+    )
+}
+
 /// Rows in plain columns under their heads.
 pub fn columns(rows: &[Row]) -> Vec<String> {
-    let head = in_columns(HEADS);
+    under_heads(rows, &in_columns(HEADS, CELLS), |row| {
+        in_columns(row.cells.each_ref().map(String::as_str), CELLS)
+    })
+}
+
+/// Their further figures in the same way.
+pub fn more_columns(rows: &[Row]) -> Vec<String> {
+    under_heads(rows, &in_columns(MORE_HEADS, MORE), |row| {
+        in_columns(row.more.each_ref().map(String::as_str), MORE)
+    })
+}
+
+fn under_heads(rows: &[Row], head: &str, cells: impl Fn(&Row) -> String) -> Vec<String> {
     let mut out = vec![format!("  {:<NAME$}{head}", "plan, case, strategy")];
     out.extend(rows.iter().map(|row| {
         let mark = if row.main { ">" } else { " " };
@@ -132,8 +177,7 @@ pub fn columns(rows: &[Row]) -> Vec<String> {
             Seen::All => "*",
         };
         let name = fitted(&named(&row.name), NAME - 1);
-        let cells = in_columns(row.cells.each_ref().map(String::as_str));
-        format!("{mark}{seen}{name:<NAME$}{cells}").trim_end().to_owned()
+        format!("{mark}{seen}{name:<NAME$}{}", cells(row)).trim_end().to_owned()
     }));
     out
 }
@@ -162,8 +206,10 @@ fn named([plan, case, strategy]: &[String; 3]) -> String {
 pub fn meaning(rows: &[Row], system: System) -> String {
     let unit = system.unit(Dimension::TemperatureDifference);
     let mut out = format!(
-        "outside: days outside the hard targets, summed over them; worst: farthest outside, {}; oxygen: lowest below the \
-         dam, mg/L; not: not by the end of the season",
+        "worst: farthest outside the hard targets, {0}; outside: days outside, summed over them; deg.d: {0} days \
+         outside; in this order, and moves last, a season is measured, and thrift seeks the least. Temperature and \
+         oxygen: days outside by each, which may be the same days; least oxygen: below the dam, mg/L; not: not by the \
+         end of the season",
         unit.symbol()
     );
     if rows.iter().any(|row| row.seen == Seen::All) {

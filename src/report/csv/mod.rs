@@ -1,7 +1,10 @@
 //! A season as a table for a spreadsheet: a row a day, units in the header.
 
+mod asked;
+
 use crate::problem::harmless;
 use crate::season::SeasonDay;
+use crate::target::DAM;
 use crate::tasks::Context;
 use crate::tasks::season::SeasonAnswer;
 use crate::units::{Dimension, System};
@@ -9,43 +12,60 @@ use crate::units::{Dimension, System};
 /// Decimals of every figure: more than anyone reads, fewer than noise.
 const DECIMALS: usize = 4;
 
-/// The days of the season spoken of.
+/// Cubic metres of the unit that volumes are shown in without customary units; exact.
+const HM3: f64 = 1e6;
+
+/// The days of the season spoken of. The pool is that of the evening, flows and temperatures are means of the day.
 pub fn season(context: &Context, answer: &SeasonAnswer) -> String {
     let (site, system, main) = (context.site(), context.system, &answer.main);
     let points = site.river.as_ref().map_or(&[][..], |r| &r.points);
     let cold = &main.outcome.cold;
     let flow = unit(Dimension::Flow, system);
     let warm = unit(Dimension::Temperature, system);
-    let volume = unit(Dimension::Volume, system);
+    let volume = if system == System::Us { unit(Dimension::Volume, system) } else { "hm3".to_owned() };
     let mut head: Vec<String> = vec![
         "date".into(),
         format!("pool_{}", unit(Dimension::Length, system)),
         format!("inflow_{flow}"),
         format!("release_{flow}"),
-        format!("release_{warm}"),
+        format!("release_temperature_{warm}"),
         "oxygen_leaving_pool_mg_l".into(),
         "oxygen_below_dam_mg_l".into(),
     ];
-    head.extend(points.iter().map(|p| text(&format!("{} {warm}", p.name))));
+    head.extend(asked::heads(&warm));
+    for point in points {
+        let own = [format!("temperature_{warm}"), "oxygen_mg_l".to_owned()];
+        let heads = own.into_iter().chain(asked::heads(&warm));
+        head.extend(heads.map(|head| text(&format!("{}_{head}", point.name))));
+    }
     head.extend(["attainable_low", "attainable_high"].map(|name| format!("{name}_{warm}")));
     for water in cold {
         let below = system.unit(Dimension::Temperature).from_si(water.threshold_c);
         head.extend(["usable", "in_all"].map(|what| format!("below_{below:.1}{warm}_{what}_{volume}")));
     }
-    head.extend(site.outlets.iter().map(|o| text(&format!("{} {flow}", o.name))));
-    head.extend(site.outlets.iter().map(|o| text(&format!("{} open %", o.name))));
+    head.extend(site.outlets.iter().map(|o| text(&format!("{}_{flow}", o.name))));
+    head.extend(site.outlets.iter().map(|o| text(&format!("{}_open_percent", o.name))));
     head.extend(["balance_water_m3", "balance_heat_j"].map(str::to_owned));
     let mut out = head.join(",") + "\n";
     for (i, day) in main.run.days.iter().enumerate() {
         let decided = main.run.decisions.iter().find(|d| d.date == day.date).and_then(|d| d.attainable_c);
         let c = |value: Option<f64>| figure(value, Dimension::Temperature, system);
         let mut row = start(day, system);
-        row.extend((0..points.len()).map(|p| c(day.points.as_ref().and_then(|f| Some(f.get(p)?.mean_c)))));
+        row.extend(asked::cells(main, DAM, day.date, system));
+        for (at, point) in points.iter().enumerate() {
+            let arrives = day.points.as_ref().and_then(|figures| figures.get(at));
+            row.push(c(arrives.map(|f| f.mean_c)));
+            row.push(plain(arrives.and_then(|f| f.oxygen_mean_mg_l)));
+            row.extend(asked::cells(main, &point.name, day.date, system));
+        }
         row.extend([c(decided.map(|a| a[0])), c(decided.map(|a| a[1]))]);
         for water in cold {
             let told = water.days.get(i);
             for value in [told.and_then(|t| t.usable_m3), told.map(|t| t.total_m3)] {
-                row.push(figure(value, Dimension::Volume, system));
+                row.push(match system {
+                    System::Us => figure(value, Dimension::Volume, system),
+                    System::Si => plain(value.map(|m3| m3 / HM3)),
+                });
             }
         }
         let gate = |outlet: usize| day.gates.iter().find(|g| g.outlet == outlet);
