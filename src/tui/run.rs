@@ -178,7 +178,7 @@ impl Outside {
     /// Does what is asked for; whether it is to leave.
     fn perform(&mut self, effect: Effect, taken: &mut Taken) -> io::Result<bool> {
         match effect {
-            Effect::Ask(generation, work) => self.worker(work.lane()).ask(generation, work),
+            Effect::Ask(generation, work) => self.worker(work.lane()).ask(generation, *work),
             Effect::Stop(lane, generation) => self.worker(lane).stop(generation),
             Effect::Watch(seen) => {
                 *self.watched.lock().unwrap_or_else(PoisonError::into_inner) = Some(seen);

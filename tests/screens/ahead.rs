@@ -9,8 +9,8 @@ use gatemix::mix::limits::Move;
 use gatemix::mix::{Asked, Gate, Setting, draw_levels, groups, levels, release};
 use gatemix::rank::Criterion;
 use gatemix::season::{
-    Amount, Balance, Change, Choosing, Decision, Difference, Found, Layers, Needed, Plan, PlanDay, Price, Run,
-    SeasonDay, Setup, Skies, Why, outcome,
+    Amount, Balance, Change, Choosing, Decision, Difference, Found, Layers, Needed, Plan, PlanDay, Price,
+    Run, SeasonDay, Setup, Skies, Why, outcome,
 };
 use gatemix::site::Strategy;
 use gatemix::tasks::Context;

@@ -71,7 +71,7 @@ impl Driver {
             match effect {
                 Effect::Ask(generation, work) => {
                     self.waiting.retain(|(_, old)| old.lane() != work.lane());
-                    self.waiting.push_back((generation, work));
+                    self.waiting.push_back((generation, *work));
                 }
                 Effect::Stop(lane, _) => self.waiting.retain(|(_, old)| old.lane() != lane),
                 Effect::List(folder) => {

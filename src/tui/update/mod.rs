@@ -58,7 +58,7 @@ pub enum Event {
 #[derive(Debug)]
 pub enum Effect {
     /// Compute.
-    Ask(u64, Work),
+    Ask(u64, Box<Work>),
     /// Stop computing in a lane: nothing of this generation or before is wanted.
     Stop(Lane, u64),
     /// Notice when the files of a site differ from what they were.
@@ -306,7 +306,7 @@ fn ask(model: &mut Model, work: Work) -> Effect {
     let generation = model.generation;
     let opening = matches!(work, Work::Open(..));
     *model.under(work.lane()) = Some(Under { generation, since: model.clock, done: 0.0, opening });
-    Effect::Ask(generation, work)
+    Effect::Ask(generation, Box::new(work))
 }
 
 /// Takes a new draft and asks what that makes necessary.
