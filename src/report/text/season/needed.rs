@@ -105,7 +105,7 @@ fn told(context: &Context, of: &CaseNeeded, system: System) -> Vec<String> {
     match &of.needed.found {
         Err(why) => out.push(format!("{case}: what is needed cannot be told: {why}")),
         Ok(found) => {
-            out.extend(found_words(context, found, system).into_iter().map(|w| format!("{case}: {w}")))
+            out.extend(found_words(context, found, system).into_iter().map(|w| format!("{case}: {w}")));
         }
     }
     let unjudged = of.needed.not_judged.iter().filter_map(|&at| context.site().targets.get(at));
