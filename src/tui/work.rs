@@ -84,9 +84,9 @@ pub enum Work {
         best: Option<Box<(Given, Shown)>>,
     },
     /// The season ahead, under what is changed.
-    Season(SeasonQuestion),
+    Season(Box<SeasonQuestion>),
     /// The cold water needed on a date of the season.
-    Needed(SeasonQuestion, NaiveDate),
+    Needed(Box<SeasonQuestion>, NaiveDate),
     /// What the mixes of a ranking cost by the end of the season.
     Prices {
         /// The files and changes of the ranking.
@@ -190,14 +190,14 @@ impl Work {
             Self::Season(question) => {
                 Done::Ahead(question.base.changed(&question.changed).and_then(|context| {
                     let answer = season(&context, &question.asked, progress)?;
-                    Ok(Box::new(Ahead { question, context: Arc::new(context), answer }))
+                    Ok(Box::new(Ahead { question: *question, context: Arc::new(context), answer }))
                 }))
             }
             Self::Needed(question, date) => {
                 Done::Needed(question.base.changed(&question.changed).and_then(|context| {
                     let date = date.to_string();
                     let answer = needed(&context, &question.asked, Some(&date), progress)?;
-                    Ok(Box::new(Left { question, context: Arc::new(context), answer }))
+                    Ok(Box::new(Left { question: *question, context: Arc::new(context), answer }))
                 }))
             }
             Self::Prices { context, ranking, asked } => Done::Priced(

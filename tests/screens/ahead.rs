@@ -37,7 +37,7 @@ pub(crate) fn answer_with(driver: &mut Driver, change: impl FnOnce(&mut Ahead)) 
     let (generation, work) = driver.question(Lane::Ahead).unwrap();
     let done = match work {
         Work::Season(question) => {
-            let mut ahead = invented(question);
+            let mut ahead = invented(*question);
             change(&mut ahead);
             Done::Ahead(Ok(Box::new(ahead)))
         }
@@ -89,7 +89,7 @@ pub(crate) fn answer_left(driver: &mut Driver) {
         notes: Vec::new(),
         fingerprint: context.fingerprint.clone(),
     };
-    let left = Box::new(Left { question, context, answer });
+    let left = Box::new(Left { question: *question, context, answer });
     driver.send(Event::Sent(Sent::Done(Lane::Needed, generation, Done::Needed(Ok(left)))));
 }
 

@@ -101,7 +101,7 @@ fn left(driver: &mut Driver, date: &str, shown: &Shown) {
     let joined = right(&driver.text());
     for case in cases {
         let m3 = case["needed"]["usable_m3"].as_f64().unwrap();
-        let amount = if shown.is_us() { m3 / 1233.481_837_547_52 } else { m3 / 1e6 };
+        let amount = if shown.is_us() { m3 / 1_233.481_837_547_52 } else { m3 / 1e6 };
         let amount = if shown.is_us() { grouped(amount) } else { format!("{amount:.2} hm3") };
         holds(&joined, &[format!("- {}: {amount}", case["case"].as_str().unwrap())]);
     }

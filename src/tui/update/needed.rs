@@ -30,7 +30,7 @@ pub(super) fn asked(model: &mut Model) -> Vec<Effect> {
     }
     session.left_asked = Some((question.clone(), date));
     model.message = None;
-    vec![ask(model, Work::Needed(question, date))]
+    vec![ask(model, Work::Needed(Box::new(question), date))]
 }
 
 /// Takes what a worker says of it.

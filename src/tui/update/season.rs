@@ -79,7 +79,7 @@ fn asking(model: &mut Model) -> Option<Effect> {
     let question = session.season_question();
     session.season_asked = Some(question.clone());
     session.season_wrong = None;
-    Some(super::ask(model, Work::Season(question)))
+    Some(super::ask(model, Work::Season(Box::new(question))))
 }
 
 /// Takes what a worker says of the season.

@@ -14,7 +14,7 @@ use super::axes::{Frame, Rows, counted, middle, row, scale, steps};
 
 /// Curves over one time, and where they lie.
 pub(super) struct Curves<'a> {
-    curves: &'a CurvesThrough,
+    of: &'a CurvesThrough,
     rows: Rows,
     frame: &'a Frame,
     look: Look,
@@ -38,7 +38,7 @@ impl<'a> Curves<'a> {
         let (times, counted) = counted(curves.dimension, system, curves.span.1);
         let shown = |value: f64| unit.from_si(value) / times;
         let y = scale(shown(curves.span.0), shown(curves.span.1))?;
-        Some(Self { curves, rows, frame, look, y, unit, times, counted })
+        Some(Self { of: curves, rows, frame, look, y, unit, times, counted })
     }
 
     fn shown(&self, si: f64) -> f64 {
@@ -50,7 +50,7 @@ impl<'a> Curves<'a> {
         let ((top, rows), grain) = (self.rows, self.look.symbols.grain());
         let mut dots = Dots::new(grain, self.frame.cols, rows);
         if let Some(x) = Scale::new(0.0, self.frame.days as f64) {
-            for (i, line) in self.curves.lines.iter().enumerate() {
+            for (i, line) in self.of.lines.iter().enumerate() {
                 let point =
                     |(i, v): (usize, &Option<f64>)| (i as f64 + 0.5, v.map_or(f64::NAN, |v| self.shown(v)));
                 let points: Vec<(f64, f64)> = line.values.iter().enumerate().map(point).collect();
@@ -60,7 +60,7 @@ impl<'a> Curves<'a> {
         let cells = (0..rows).flat_map(|row| (0..self.frame.cols).map(move |col| (col, row)));
         for (col, row) in cells {
             let Some(spot) = dots.spot(col, row) else { continue };
-            let Some(line) = self.curves.lines.get(spot.curve) else { continue };
+            let Some(line) = self.of.lines.get(spot.curve) else { continue };
             let glyph = spot.glyph.to_string();
             let mark = if grain == Grain::Ascii { line.mark } else { &glyph };
             pen.put(self.frame.side + col, top + row, mark, line.role);
@@ -76,7 +76,7 @@ impl<'a> Curves<'a> {
     pub(super) fn shade(&self, pen: &mut Pen) {
         let (top, rows) = self.rows;
         for col in 0..self.frame.cols {
-            let of = self.curves.shaded.1.get(self.frame.day_of(col)).copied().flatten();
+            let of = self.of.shaded.1.get(self.frame.day_of(col)).copied().flatten();
             let Some([low, high]) = of.map(|range| range.map(|v| self.shown(v))) else { continue };
             let held = |row: &usize| (low..=high).contains(&middle(&self.y, *row, rows));
             let mut held: Vec<usize> = (0..rows).filter(held).collect();
@@ -109,7 +109,7 @@ impl<'a> Curves<'a> {
         }
         if !self.frame.titles {
             let room = end.saturating_sub(wide + 1);
-            pen.put(0, top, &cut(&self.curves.name, room), Role::Strong);
+            pen.put(0, top, &cut(&self.of.name, room), Role::Strong);
             // the unit where no number needs the room
             if let Some(free) = (top + 1..top + rows).find(|row| !numbered.contains(row)) {
                 pen.put(0, free, &cut(&self.counted, end), Role::Quiet);
@@ -119,7 +119,7 @@ impl<'a> Curves<'a> {
 
     /// The name, and what each mark means.
     fn title(&self, pen: &mut Pen) {
-        let (row, curves) = (self.rows.0 - 1, self.curves);
+        let (row, curves) = (self.rows.0 - 1, self.of);
         let text = format!("{}, {}", curves.name, self.counted);
         pen.put(0, row, &text, Role::Strong);
         let lines = curves.lines.iter().rev().filter(|line| !line.name.is_empty());

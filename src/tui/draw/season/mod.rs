@@ -150,12 +150,16 @@ pub fn season(picture: &SeasonPicture, area: Rect, buf: &mut Buffer, look: Look)
     let curves = [Some((&picture.release, frame.release)), cold].into_iter().flatten();
     let curves: Vec<Curves> =
         curves.filter_map(|(of, rows)| Curves::of(picture.system, of, rows, &frame, look)).collect();
-    curves.iter().for_each(|curves| curves.draw(&mut pen));
+    for curves in &curves {
+        curves.draw(&mut pen);
+    }
     strips::draw(picture, &frame, &mut pen, look);
     frame.time(picture, &mut pen, look);
     frame.cursor(picture, &mut pen, look);
     // behind everything
-    curves.iter().for_each(|curves| curves.shade(&mut pen));
+    for curves in &curves {
+        curves.shade(&mut pen);
+    }
 }
 
 /// Signs over the water with their meaning, where a picture in an area has no row for them.

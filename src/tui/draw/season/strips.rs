@@ -28,7 +28,9 @@ pub(super) fn draw(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: 
     let (top, rows) = frame.outside;
     for (row, (name, days)) in (top..top + rows).zip(&picture.outside) {
         pen.put(0, row, &cut(name, end), Role::Strong);
-        days.iter().for_each(|day| pen.put(frame.side + frame.col_of(*day), row, "!", Role::Outside));
+        for day in days {
+            pen.put(frame.side + frame.col_of(*day), row, "!", Role::Outside);
+        }
     }
     let (top, rows) = frame.gates;
     for (row, gate) in (top..top + rows).zip(&picture.gates) {

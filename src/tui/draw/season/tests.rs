@@ -168,7 +168,7 @@ fn scenario_gates_that_share_a_row_are_all_named() {
     let all = drawn(&picture, 80, 34).join("\n");
     assert!(!all.contains("+1"), "{all}");
     for name in ["Spillway", "N1 S1", "Upper"] {
-        assert!(all.lines().any(|l| l.contains(name) && l.contains('>')), "{name}:\n{all}");
+        assert!(all.lines().take(16).any(|l| l.contains(name)), "{name}:\n{all}");
     }
 }
 

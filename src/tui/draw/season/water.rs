@@ -76,12 +76,12 @@ struct Cell {
 struct Cells<'a> {
     frame: &'a Frame,
     scale: Scale,
-    cells: Vec<Cell>,
+    all: Vec<Cell>,
 }
 
 impl<'a> Cells<'a> {
     fn new(frame: &'a Frame, scale: Scale) -> Self {
-        Self { frame, scale, cells: vec![Cell::default(); frame.cols * frame.water.1] }
+        Self { frame, scale, all: vec![Cell::default(); frame.cols * frame.water.1] }
     }
 
     /// Row of an elevation, from the top of the water's part.
@@ -95,7 +95,7 @@ impl<'a> Cells<'a> {
     }
 
     fn cell(&mut self, col: usize, row: usize) -> Option<&mut Cell> {
-        self.cells.get_mut(row * self.frame.cols + col)
+        self.all.get_mut(row * self.frame.cols + col)
     }
 
     fn put(&mut self, col: usize, row: usize, glyph: &'static str, role: Role) {
@@ -113,7 +113,7 @@ impl<'a> Cells<'a> {
     }
 
     fn draw(&self, pen: &mut Pen) {
-        for (i, cell) in self.cells.iter().enumerate() {
+        for (i, cell) in self.all.iter().enumerate() {
             let Some((glyph, role)) = cell.drawn else { continue };
             let (row, col) = (i / self.frame.cols, i % self.frame.cols);
             let (col, row) = (self.frame.side + col, self.frame.water.0 + row);

@@ -63,7 +63,9 @@ pub(super) fn lines(screen: &Screen, width: usize, pictures: Option<(Rect, Look)
     match screen.day().and_then(|i| Some((i, days.get(i)?))) {
         Some((i, day)) => {
             of_water(screen, (i, day), &mut out);
-            left::lines(screen, day.date).iter().for_each(|(words, role)| out.add_list(words, *role));
+            for (words, role) in left::lines(screen, day.date) {
+                out.add_list(&words, role);
+            }
             of_gates(screen, day, &mut out);
         }
         None => out.add("the season has no day", Role::Outside),
@@ -114,7 +116,9 @@ fn of_water(screen: &Screen, (i, day): (usize, &SeasonDay), out: &mut Said) {
         (words, role, true) => out.told(|look| sign(ASKED.0, ASKED.1, look), &words, role),
         (words, role, false) => out.add(&words, role),
     }
-    missed.iter().for_each(|words| out.add(words, Role::Outside));
+    for words in &missed {
+        out.add(words, Role::Outside);
+    }
     if let Some([low, high]) = reach(screen, day.date) {
         let (low, high) = (figure(low, system.unit(Dimension::Temperature), 1), c(high));
         let words = format!("attainable {low} to {high}");
