@@ -152,7 +152,6 @@ pub fn learn(
 
 /// Whether the knobs that were found are worth keeping.
 fn worth(fitted: [Apart; 2], tested: [Apart; 2]) -> Result<(), String> {
-    let worse = |[before, after]: [f64; 2]| after > before;
     let warmth = |a: [Apart; 2]| a.map(|a| a.temperature_c);
     let breath = |a: [Apart; 2]| Some([a[0].oxygen_mg_l?, a[1].oxygen_mg_l?]);
     let [was, is] = warmth(fitted);
@@ -163,11 +162,13 @@ fn worth(fitted: [Apart; 2], tested: [Apart; 2]) -> Result<(), String> {
             "no knobs within the published ranges come nearer to the second cast than {was}"
         ));
     }
-    if worse(warmth(tested)) {
-        let [was, is] = warmth(tested).map(|c| say::dc(c, 2));
+    let [was, is] = warmth(tested);
+    if is > was {
+        let [was, is] = [was, is].map(|c| say::dc(c, 2));
         return Err(format!("on the third cast the fit is worse than before: off by {is} against {was}"));
     }
-    if let Some([was, is]) = breath(tested).filter(|pair| worse(*pair)) {
+    // less than a sensor's noise is no worse: it does not outweigh what the temperature gains
+    if let Some([was, is]) = breath(tested).filter(|[was, is]| *is > was + AS_NEAR) {
         return Err(format!(
             "on the third cast the oxygen of the fit is worse than before: off by {is:.2} mg/L against {was:.2}"
         ));

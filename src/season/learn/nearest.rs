@@ -118,6 +118,7 @@ fn put(some: &[&Knob], mut knobs: Knobs, at: &[f64]) -> Knobs {
 /// The place from which no step leads nearer, by damped least squares (Levenberg 1944, Marquardt 1963) on the logarithms
 /// of the knobs inside their ranges, or that misses no more than `enough`. No place where the pool cannot go from the
 /// start; `None` where `far` stops it.
+#[expect(clippy::option_option, reason = "a caller who stops it and a pool that cannot go are two things")]
 fn sought(some: &[&Knob], from: Knobs, rounds: usize, enough: f64, far: Far) -> Option<Option<Place>> {
     let ends: Vec<[f64; 2]> = some.iter().map(|knob| knob.range.map(f64::ln)).collect();
     let mut place = |at: Vec<f64>| -> Option<Option<Place>> {
