@@ -86,7 +86,7 @@ pub(super) enum Command {
             value_name = "FROM,TO,TEST",
             num_args = 0..=1,
             default_missing_value = "",
-            conflicts_with_all = ["case", "strategy", "every", "csv", "strict"]
+            conflicts_with_all = ["case", "strategy", "every", "order", "csv", "strict"]
         )]
         learn: Option<String>,
         /// How much cold water must be left at the end of a date for no later day outside the hard targets by their
@@ -270,6 +270,10 @@ pub(super) struct Ahead {
     /// Days between decisions; without it as the site file says.
     #[arg(long, value_name = "DAYS")]
     every: Option<String>,
+    /// What counts first where the mix of a day is chosen, comma between: oxygen, range, preferred, cold_water, moves.
+    /// Those left out follow in this order.
+    #[arg(long, value_name = "CRITERIA")]
+    order: Option<String>,
     /// A gate as it stands now, such as N1=30, N1=50% or the name of a position; repeat for each. Without any, as
     /// the site file says.
     #[arg(long, value_name = "GATE=FLOW|GATE=OPENING")]
@@ -284,6 +288,7 @@ impl Ahead {
             strategy: self.strategy.clone(),
             schedule: self.schedule.clone(),
             every: self.every.clone(),
+            order: self.order.clone(),
             now: self.now.clone(),
         }
     }

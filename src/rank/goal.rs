@@ -34,6 +34,12 @@ impl Criterion {
         ("moves", Self::Moves),
     ];
 
+    /// The usual order.
+    pub const USUAL: [Self; 5] = {
+        let [oxygen, range, preferred, cold_water, moves] = Self::NAMES;
+        [oxygen.1, range.1, preferred.1, cold_water.1, moves.1]
+    };
+
     /// The name used on the command line.
     pub fn name(self) -> &'static str {
         Self::NAMES.iter().find(|(_, c)| *c == self).map_or("", |(n, _)| n)

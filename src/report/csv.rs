@@ -68,10 +68,10 @@ fn start(day: &SeasonDay, system: System) -> Vec<String> {
         day.date.to_string(),
         figure(Some(day.pool_m), Dimension::Length, system),
         figure(Some(day.inflow_m3s), Dimension::Flow, system),
-        figure(Some(day.release.flow_m3s), Dimension::Flow, system),
-        figure(Some(day.release.temperature_c), Dimension::Temperature, system),
-        plain(day.release.oxygen_mg_l),
-        plain(day.release.oxygen_below_mg_l),
+        figure(day.release.map(|release| release.flow_m3s), Dimension::Flow, system),
+        figure(day.release.map(|release| release.temperature_c), Dimension::Temperature, system),
+        plain(day.release.and_then(|release| release.oxygen_mg_l)),
+        plain(day.release.and_then(|release| release.oxygen_below_mg_l)),
     ]
 }
 

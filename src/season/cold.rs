@@ -16,13 +16,23 @@ use super::reshape::cut;
 use super::run::SeasonDay;
 use super::tally::TargetTally;
 
-/// Lowest elevation that the deepest outlet usable on a day draws from at the release of that day, m; `None` where
-/// none is usable.
-pub(super) fn reach_m(site: &Site, day: &SeasonDay) -> Option<f64> {
+/// Lowest elevation that the deepest outlet usable on each day draws from at the release of that day, m; `None` where
+/// none is usable. A day without a release is taken at that of the day before: its water can still be drawn.
+pub(super) fn reaches_m(site: &Site, days: &[SeasonDay]) -> Vec<Option<f64>> {
+    let first = days.iter().find_map(|day| day.release).map_or(0.0, |release| release.flow_m3s);
+    let reach = |flow_m3s: &mut f64, day: &SeasonDay| {
+        *flow_m3s = day.release.map_or(*flow_m3s, |release| release.flow_m3s);
+        Some(reach_m(site, day, *flow_m3s))
+    };
+    days.iter().scan(first, reach).collect()
+}
+
+/// The same of one day at a release (m3/s).
+pub(super) fn reach_m(site: &Site, day: &SeasonDay, flow_m3s: f64) -> Option<f64> {
     let column = day.layers.column(site)?;
     let states = mix::outlet_states(site, day.pool_m);
     let deepest = states.iter().rev().find(|s| usable(site, s.outlet, day.pool_m, day.date).is_ok())?;
-    mix::reach_m(site, &column, deepest.outlet, day.release.flow_m3s)
+    mix::reach_m(site, &column, deepest.outlet, flow_m3s)
 }
 
 /// Cold water below a threshold (C) at the end of each day, where each day's outlets reach down to an elevation.

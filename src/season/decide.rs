@@ -22,9 +22,6 @@ const REFINED: usize = 2;
 /// Mixes computed in full until enough of them keep every limit (choice): what the ranking allows by a hair may break
 /// one in full.
 const TRIED: usize = 6;
-/// The usual order: what the targets ask, then cold water, then moves.
-const ORDER: [Criterion; 5] =
-    [Criterion::Oxygen, Criterion::Range, Criterion::Preferred, Criterion::ColdWater, Criterion::Moves];
 
 /// Why a mix was decided on.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -76,6 +73,8 @@ pub(super) struct Choice<'a> {
     pub(super) now: Option<&'a Setting>,
     /// What leaves the dam before.
     pub(super) before: Before,
+    /// What counts first.
+    pub(super) order: &'a [Criterion],
 }
 
 /// A mix decided on.
@@ -205,7 +204,7 @@ impl Choice<'_> {
             now: self.now,
             before: self.before,
             steps: STEPS,
-            order: &ORDER,
+            order: self.order,
             without: &[],
         }
     }

@@ -4,7 +4,7 @@
 
 use chrono::{Days, NaiveDate};
 
-use crate::mix::limits::{self, Check};
+use crate::mix::limits::{self, Check, Rule};
 use crate::site::{Outlet, Site};
 
 use super::decide::{Decision, Why};
@@ -49,7 +49,7 @@ fn lives_of(site: &Site, run: &Run, outlet: usize) -> Vec<GateLife> {
     let mut before: Option<NaiveDate> = None;
     let mut barred: Option<Check> = None;
     for (day, pool_m) in days.iter().zip(mornings) {
-        let reason = |check: &Check| (check.rule.name(), check.words(site));
+        let reason = |check: &Check| why(site, check, false);
         match (usable(site, outlet, pool_m, day.date), before) {
             (Ok(()), None) => {
                 let reason = barred.as_ref().map(reason);
@@ -69,10 +69,24 @@ fn lives_of(site: &Site, run: &Run, outlet: usize) -> Vec<GateLife> {
         }
     }
     if out.is_empty() {
-        let reason = barred.map(|check| (check.rule.name(), check.words(site)));
+        let reason = barred.map(|check| why(site, &check, false));
         out.push(GateLife { reason, ..GateLife::never(outlet) });
     }
     out
+}
+
+/// The name of a limit, and why it stands in the way: an outage by its dates, which outlast the day that is told of. The
+/// outlet is named where nothing beside it does.
+fn why(site: &Site, check: &Check, named: bool) -> (&'static str, String) {
+    let outage = site.limits.outages.get(check.item).filter(|_| check.rule == Rule::Outage);
+    let words = outage.map(|outage| {
+        let outlet = site.outlets.get(outage.outlet).filter(|_| named);
+        let of = outlet.map_or_else(String::new, |outlet| format!(" of `{}`", outlet.name));
+        let end = outage.to.map_or_else(|| "with no end told".to_owned(), |to| format!("until {to}"));
+        let reason = if outage.reason.is_empty() { String::new() } else { format!(", {}", outage.reason) };
+        format!("outage{of} {end}{reason}")
+    });
+    (check.rule.name(), words.unwrap_or_else(|| check.words(site)))
 }
 
 /// Whether a gate is set open on a day.
@@ -98,7 +112,7 @@ pub(super) fn moves(site: &Site, run: &Run) -> Vec<GateMoves> {
     let of = |decision: &Decision| GateMoves {
         date: decision.date,
         forced: match decision.why {
-            Why::Forced(check) => Some((check.rule.name(), check.words(site))),
+            Why::Forced(check) => Some(why(site, &check, true)),
             Why::Begin | Why::Due => None,
         },
         moved: decision.moved.clone(),

@@ -7,13 +7,13 @@ use std::sync::Arc;
 use chrono::{NaiveDate, NaiveTime};
 
 use crate::intake;
-use crate::mix::limits::{Before, Check, Moves};
-use crate::mix::{Asked, Blend, Day, Setting, checks, groups, release};
+use crate::mix::limits::{self, Before, Check, Moves};
+use crate::mix::{Asked, Blend, Day, Setting, checks, groups, release, resolve};
 use crate::profile::{Column, Profile};
 use crate::rank::Progress;
 use crate::river::{self, Figures};
 use crate::site::Site;
-use crate::units::DAY_S;
+use crate::units::{DAY_S, say};
 
 use super::ahead::{ahead, forcing};
 use super::aims::asking;
@@ -23,7 +23,10 @@ use super::plan::PlanDay;
 use super::run::{Ended, Run, SeasonDay, Setup};
 use super::set::{Flowing, flowing};
 use super::step::day;
-use super::strategy::{Wants, is_due, set_by, wants};
+use super::strategy::{Wants, changes_on, is_due, set_by, wants};
+
+/// A release this near to none is none, m3/s (choice: round-off of the volume of a large pool).
+const NOTHING_M3S: f64 = 1e-6;
 
 /// A season under way.
 #[derive(Clone)]
@@ -42,6 +45,8 @@ pub(super) struct Going<'a> {
     last_c: Option<f64>,
     /// Whether what arrives at the points is wanted.
     to_the_points: bool,
+    /// Whether a decision was due on a day without a release.
+    overdue: bool,
     pub(super) run: Run,
 }
 
@@ -60,6 +65,11 @@ impl Morning {
     pub(super) fn date(&self) -> NaiveDate {
         self.plan.date
     }
+
+    /// Whether nothing is to be released.
+    fn is_closed(&self) -> bool {
+        self.release_m3s <= 0.0
+    }
 }
 
 impl<'a> Going<'a> {
@@ -74,7 +84,7 @@ impl<'a> Going<'a> {
         let run = Run {
             plan: setup.plan.name.clone(),
             case: setup.skies.case.name.clone(),
-            strategy: setup.choosing.name().to_owned(),
+            strategy: setup.choosing.name(),
             start: layers.clone(),
             days: Vec::new(),
             decisions: Vec::new(),
@@ -88,6 +98,7 @@ impl<'a> Going<'a> {
             asked: setup.now.map(|now| Asked::of(&site, now)),
             last_c: None,
             to_the_points,
+            overdue: false,
             layers,
             site,
             run,
@@ -164,14 +175,12 @@ impl<'a> Going<'a> {
         let plan = *self.ahead.get(self.run.days.len())?;
         self.site.inflow_m3s = Some(plan.inflow_m3s);
         let release_m3s = self.release_m3s(&plan);
-        if release_m3s <= 0.0 {
-            let words = if plan.release_m3s.is_some() {
-                "the plan releases nothing, and a day without a release is not computed"
-            } else {
-                "nothing is left to release: the pool is to rise by all that comes in, and a day without a release is \
-                 not computed"
-            };
-            self.end(plan.date, words.into(), None);
+        if release_m3s < 0.0 {
+            let words = format!(
+                "nothing is left to release: for the pool to be where it is planned, {} more would have to come in",
+                say::m3s(-release_m3s, 2)
+            );
+            self.end(plan.date, words, None);
             return None;
         }
         let at = plan.date.and_time(NaiveTime::MIN).and_local_timezone(self.site.offset).single();
@@ -186,14 +195,15 @@ impl<'a> Going<'a> {
         Some(Morning { plan, release_m3s, profile, held })
     }
 
-    /// What a day is to release, m3/s.
+    /// What a day is to release, m3/s; below zero where the inflow cannot fill the pool as far as is planned.
     fn release_m3s(&self, plan: &PlanDay) -> f64 {
         let pool = &self.site.pool;
         let by_pool = |to_m: f64| {
             let gain_m3 = pool.volume_m3(to_m) - pool.volume_m3(pool.bed_m) - self.layers.volume_m3();
-            (plan.inflow_m3s - gain_m3 / DAY_S).max(0.0)
+            plan.inflow_m3s - gain_m3 / DAY_S
         };
-        plan.release_m3s.or_else(|| plan.pool_m.map(by_pool)).unwrap_or_default()
+        let release_m3s = plan.release_m3s.or_else(|| plan.pool_m.map(by_pool)).unwrap_or_default();
+        if release_m3s.abs() < NOTHING_M3S { 0.0 } else { release_m3s }
     }
 
     /// What is asked, as it would flow on a day, and the first limit it breaks. `None` where it gives no water.
@@ -214,13 +224,21 @@ impl<'a> Going<'a> {
     }
 
     /// Why something is decided on a day; `None` where what is set stays.
+    ///
+    /// On a day without a release there is no water to choose: what is due then is decided on the next day with one,
+    /// and only a schedule moves gates.
     pub(super) fn why(&self, morning: &Morning) -> Option<Why> {
         let date = morning.date();
         match (&morning.held, self.run.decisions.is_empty()) {
+            _ if morning.is_closed() => {
+                let is_set = date >= self.decides && changes_on(self.setup, date);
+                let why = if self.run.decisions.is_empty() { Why::Begin } else { Why::Due };
+                is_set.then_some(why)
+            }
             (Some(_), true) if date < self.decides => None,
             (_, true) => Some(Why::Begin),
             (None, _) => Some(Why::Due),
-            (Some(_), _) if is_due(self.setup, self.decides, date) => Some(Why::Due),
+            (Some(_), _) if self.overdue || is_due(self.setup, self.decides, date) => Some(Why::Due),
             (Some((_, broken)), _) => broken.map(Why::Forced),
         }
     }
@@ -233,6 +251,9 @@ impl<'a> Going<'a> {
             Wants::Stay => self.asked.clone(),
             Wants::These(asked) => Some(asked),
         };
+        if let (true, Some(asked)) = (morning.is_closed(), &wanted) {
+            return Ok(decision(date, why, self.without_water(morning, asked)));
+        }
         let flows = |asked: &Asked| self.flows(asked, morning.release_m3s, &morning.profile, date);
         let found = wanted.and_then(|asked| Some((flows(&asked)?, asked)));
         match found {
@@ -247,6 +268,22 @@ impl<'a> Going<'a> {
             Some(((_, Some(check)), _)) => self.best(morning, Why::Forced(check), 0.0, progress),
             None => self.best(morning, why, 0.0, progress),
         }
+    }
+
+    /// Gates moved on a day without a release: those that would stand otherwise if water flowed as asked.
+    fn without_water(&self, morning: &Morning, asked: &Asked) -> Chosen {
+        let (site, profile) = (&self.site, &morning.profile);
+        let sum = |asked: &Asked| asked.parts().iter().map(|part| part.1).sum::<f64>();
+        let flow_m3s = sum(asked).max(self.asked.as_ref().map_or(0.0, sum));
+        let full = |asked: &Asked| {
+            let asked = asked.at_release(site, flow_m3s, profile.pool_m);
+            resolve(site, &profile.column, &self.groups, &asked, profile.pool_m)
+        };
+        let to = full(asked);
+        let (moves, moved) = self.asked.as_ref().map(full).map_or_else(Default::default, |now| {
+            (limits::moves(site, &now, &to, &mut Vec::new()), limits::moved(site, &now, &to))
+        });
+        Chosen { asked: asked.clone(), moves, moved, attainable_c: None, past: Vec::new() }
     }
 
     fn spills(&self, outlet: usize) -> bool {
@@ -276,51 +313,59 @@ impl<'a> Going<'a> {
     /// What a mix of the day is decided on, with an aim.
     fn on<T>(&self, morning: &Morning, aim: f64, ask: impl FnOnce(&Choice) -> T) -> T {
         let day = Day::new(&self.site, morning.date(), self.setup.skies.conditions.clone());
+        let shut = Setting::default();
+        let is_shut = |asked: &Asked| asked.parts().iter().all(|part| part.1 <= 0.0);
+        let now = morning.held.as_ref().map(|held| &held.0.setting);
         let choice = Choice {
             site: &self.site,
             groups: &self.groups,
             profile: &morning.profile,
             day: &asking(day, &self.site, aim),
             blocks: [(1.0, morning.release_m3s)],
-            now: morning.held.as_ref().map(|held| &held.0.setting),
+            now: now.or_else(|| self.asked.as_ref().is_some_and(is_shut).then_some(&shut)),
             // the change of the flow is the plan's
             before: Before { flow_m3s: Some(morning.release_m3s), temperature_c: self.last_c },
+            order: self.setup.order,
         };
         ask(&choice)
     }
 
     /// Goes through a day with what was decided, or with what is set.
     pub(super) fn pass(&mut self, morning: Morning, decided: Option<Decision>) {
-        let date = morning.date();
+        let (date, is_closed) = (morning.date(), morning.is_closed());
         let Morning { plan, release_m3s, profile, mut held } = morning;
+        self.overdue |= is_closed && is_due(self.setup, self.decides, date);
         if let Some(decision) = decided {
             held = self.flows(&decision.asked, release_m3s, &profile, date);
             self.asked = Some(decision.asked.clone());
             self.run.decisions.push(decision);
+            self.overdue = false;
         }
-        let Some((flowing, _)) = held else {
-            return self.end(date, "what is set gives no water".into(), None);
+        let (gates, drawn) = match held {
+            Some((Flowing { setting, drawn, .. }, _)) => (setting.gates, drawn),
+            None if is_closed => (Vec::new(), Vec::new()),
+            None => return self.end(date, "what is set gives no water".into(), None),
         };
         let sky = self.setup.skies.days.get(&date).copied();
         let forcing = forcing(&plan, sky, self.layers.layers.last());
-        let levels = |_: &Column, _: f64| flowing.drawn.iter().map(|d| d.level.clone()).collect();
+        let levels = |_: &Column, _: f64| drawn.iter().map(|d| d.level.clone()).collect();
         let stepped = match day(&mut self.layers, &self.site, &forcing, &levels) {
             Ok(stepped) => stepped,
             Err(unbalanced) => return self.end(date, unbalanced.words, None),
         };
-        let Some(left) = release(&stepped.drawn) else {
+        let left = release(&stepped.drawn).map(|left| left.aerated(&self.site, &stepped.drawn, 0.5));
+        if left.is_none() && !is_closed {
             return self.end(date, "what is set gives no water".into(), None);
-        };
-        let left = left.aerated(&self.site, &stepped.drawn, 0.5);
-        self.last_c = Some(left.temperature_c);
+        }
+        self.last_c = left.map(|left| left.temperature_c).or(self.last_c);
         self.run.days.push(SeasonDay {
             date,
             pool_m: self.layers.pool_m(&self.site.pool),
             inflow_m3s: plan.inflow_m3s,
-            gates: flowing.setting.gates,
+            gates,
             drawn: stepped.drawn,
             release: left,
-            points: self.arriving(date, &left),
+            points: left.and_then(|left| self.arriving(date, &left)),
             layers: self.layers.clone(),
             balance: stepped.balance,
             overturned: stepped.overturned,

@@ -194,8 +194,7 @@ impl Search<'_> {
     /// Why no other amount can be made.
     fn range_m3(&self) -> Result<[f64; 2], String> {
         let date = self.day.date;
-        let reach_m =
-            cold::reach_m(&self.site, &self.day).ok_or_else(|| format!("no outlet is usable on {date}"))?;
+        let reach_m = self.reach_m(&self.day).ok_or_else(|| format!("no outlet is usable on {date}"))?;
         let [colder_m3, warmer_m3] = self.day.layers.parted_m3(self.threshold_c);
         if colder_m3 <= 0.0 {
             return Err(format!(
@@ -239,6 +238,13 @@ impl Search<'_> {
         Some(Found { least: least.amount, lower, remain: least.remain, tried: amounts })
     }
 
+    /// Lowest elevation within reach of the outlets usable on the date from a pool, m. On a date without a release at that
+    /// of the day before.
+    fn reach_m(&self, day: &SeasonDay) -> Option<f64> {
+        let release = self.going.run.days.iter().rev().find_map(|day| day.release);
+        cold::reach_m(&self.site, day, release.map_or(0.0, |release| release.flow_m3s))
+    }
+
     /// The season with so much cold water (m3).
     fn with(&self, cold_m3: f64) -> Option<Tried> {
         let layers = self.day.layers.with_cold(&self.site, self.threshold_c, cold_m3)?;
@@ -254,7 +260,7 @@ impl Search<'_> {
         let tallies = tallies(&self.site, &setup.skies.conditions, &run.days);
         let remain = self.stretches(&tallies, |held| &held.temperature_days);
         let day = SeasonDay { layers: layers.clone(), ..self.day.clone() };
-        let reach = cold::reach_m(&self.site, &day);
+        let reach = self.reach_m(&day);
         let cold = cold::by_day(&self.site, &[day], &[reach], self.threshold_c);
         let cold = cold.days.first()?;
         let amount = Amount {

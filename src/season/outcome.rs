@@ -240,7 +240,7 @@ const HOURS: f64 = 24.0;
 pub fn outcome(setup: &Setup, run: &Run) -> Outcome {
     let site = &season_site(setup);
     let days = &run.days;
-    let reaches: Vec<Option<f64>> = days.iter().map(|day| cold::reach_m(site, day)).collect();
+    let reaches = cold::reaches_m(site, days);
     let colder = |threshold_c: f64| cold::by_day(site, days, &reaches, threshold_c);
     let reserves: Vec<(ColdWater, Exhausted)> = (site.season.reserves.iter())
         .map(|reserve| {
@@ -299,7 +299,7 @@ fn first(all: &[&Exhausted]) -> Option<Exhausted> {
 
 /// The least of the season; days of which it is not known are passed over.
 fn least_oxygen(days: &[SeasonDay]) -> Option<(f64, NaiveDate)> {
-    let known = days.iter().filter_map(|day| Some((day.release.oxygen_below_mg_l?, day.date)));
+    let known = days.iter().filter_map(|day| Some((day.release?.oxygen_below_mg_l?, day.date)));
     known.min_by(|a, b| a.0.total_cmp(&b.0))
 }
 

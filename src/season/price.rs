@@ -9,7 +9,7 @@ use rayon::prelude::*;
 
 use crate::mix::{Asked, Perturbed, Setting};
 use crate::profile::Profile;
-use crate::rank::Progress;
+use crate::rank::{Criterion, Progress};
 
 use super::outcome::{Exhausted, season_site};
 use super::plan::Plan;
@@ -40,6 +40,8 @@ pub struct Pricing<'a> {
     pub skies: &'a Skies,
     /// Days until the next decision, and between those after it.
     pub decide_days: u32,
+    /// What counts first where the mix of a later day is chosen.
+    pub order: &'a [Criterion],
 }
 
 /// A change in days against the mix that prices are told against, with its range over the members.
@@ -143,6 +145,7 @@ fn held(
         skies: of.skies,
         choosing: Choosing::Held(Asked::of(&of.skies.site, mix), next),
         decide_days: of.decide_days,
+        order: of.order,
     };
     // whoever is told how much is done is told of whole seasons
     let season = run(&setup, &|_| progress(0.0))?;

@@ -9,7 +9,7 @@ use chrono::NaiveDate;
 use crate::mix::limits::Check;
 use crate::mix::{Asked, Blend, Drawn, Gate, Setting};
 use crate::profile::Profile;
-use crate::rank::Progress;
+use crate::rank::{Criterion, Progress};
 use crate::river::Figures;
 use crate::site::Strategy;
 
@@ -56,6 +56,8 @@ pub struct Setup<'a> {
     pub choosing: Choosing,
     /// Days between decisions.
     pub decide_days: u32,
+    /// What counts first where the mix of a day is chosen.
+    pub order: &'a [Criterion],
 }
 
 /// Why a season ended before its plan.
@@ -82,9 +84,10 @@ pub struct SeasonDay {
     pub gates: Vec<Gate>,
     /// Levels that drew, with their zones.
     pub drawn: Vec<Drawn>,
-    /// The release, oxygen below the dam counted in.
-    pub release: Blend,
-    /// What arrives at the points of the river, in its order; `None` where the way is not known.
+    /// The release, oxygen below the dam counted in; `None` where nothing leaves the dam.
+    pub release: Option<Blend>,
+    /// What arrives at the points of the river, in its order; `None` where the way is not known, or nothing leaves the
+    /// dam.
     pub points: Option<Vec<Figures>>,
     /// The pool at its end.
     pub layers: Layers,
@@ -128,6 +131,13 @@ pub fn run(setup: &Setup, progress: Progress) -> Option<Run> {
 /// stood against it. Stopped as [`run`] is.
 pub fn passed(setup: &Setup, progress: Progress) -> Option<Run> {
     Going::new(setup)?.through_what_was(progress)
+}
+
+impl SeasonDay {
+    /// What leaves the dam, m3/s.
+    pub fn release_m3s(&self) -> f64 {
+        self.release.map_or(0.0, |release| release.flow_m3s)
+    }
 }
 
 impl Run {

@@ -39,7 +39,7 @@ fn sums(site: &Site, stages: &Stages, days: &[SeasonDay]) -> Result<Vec<(NaiveDa
     let point = site.river.as_ref().and_then(|r| r.points.iter().position(|p| p.name == stages.point));
     let temperature = |day: &SeasonDay| {
         if stages.point == DAM {
-            return Some(day.release.temperature_c);
+            return Some(day.release?.temperature_c);
         }
         Some(day.points.as_ref()?.get(point?)?.mean_c)
     };
@@ -52,7 +52,10 @@ fn sums(site: &Site, stages: &Stages, days: &[SeasonDay]) -> Result<Vec<(NaiveDa
     days.iter()
         .skip(first)
         .map(|day| {
-            let warm_c = temperature(day).ok_or_else(|| "what arrives there is not known".to_owned())?;
+            let warm_c = temperature(day).ok_or_else(|| match day.release {
+                Some(_) => "what arrives there is not known".to_owned(),
+                None => format!("nothing is released on {}", day.date),
+            })?;
             sum += (warm_c - stages.base_c).max(0.0);
             Ok((day.date, sum))
         })

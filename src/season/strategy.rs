@@ -24,12 +24,12 @@ pub(super) enum Wants {
 
 impl Choosing {
     /// Its name.
-    pub fn name(&self) -> &'static str {
+    pub fn name(&self) -> String {
         match self {
-            Self::By(strategy) => strategy.name(),
-            Self::Schedule(_) => "schedule",
-            Self::Aims(_) | Self::Found(_) => Strategy::Thrift.name(),
-            Self::Held(..) => "held",
+            Self::By(strategy) => strategy.name().to_owned(),
+            Self::Schedule(of) => Schedule::called(&of.file),
+            Self::Aims(_) | Self::Found(_) => Strategy::Thrift.name().to_owned(),
+            Self::Held(..) => "held".to_owned(),
         }
     }
 }
@@ -39,7 +39,12 @@ pub(super) fn is_due(setup: &Setup, decides: NaiveDate, date: NaiveDate) -> bool
     let from = if let Choosing::Held(_, until) = &setup.choosing { *until } else { decides };
     let passed = (date - from).num_days();
     let is_turn = passed >= 0 && passed % i64::from(setup.decide_days.max(1)) == 0;
-    is_turn || schedule(&setup.choosing).is_some_and(|s| s.changes.iter().any(|change| change.0 == date))
+    is_turn || changes_on(setup, date)
+}
+
+/// Whether a schedule changes gates on a date.
+pub(super) fn changes_on(setup: &Setup, date: NaiveDate) -> bool {
+    schedule(&setup.choosing).is_some_and(|s| s.changes.iter().any(|change| change.0 == date))
 }
 
 /// What is wanted of a day on which something is decided for a reason.

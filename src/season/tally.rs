@@ -151,7 +151,7 @@ fn station(site: &Site, rule: &Target, days: &[SeasonDay]) -> Daily {
     let point = points.iter().position(|p| p.name == rule.point).filter(|_| rule.point != DAM);
     let figures = |day: &SeasonDay| match point {
         Some(point) => day.points.as_ref()?.get(point).copied(),
-        None if rule.point == DAM => Some(at_dam(site, day)),
+        None if rule.point == DAM => at_dam(site, day),
         None => None,
     };
     let of = |read: &dyn Fn(&Figures) -> Option<Day>| Days {
@@ -170,12 +170,12 @@ fn station(site: &Site, rule: &Target, days: &[SeasonDay]) -> Daily {
     }
 }
 
-/// The release of a day as figures of the dam.
-fn at_dam(site: &Site, day: &SeasonDay) -> Figures {
-    let release = &day.release;
+/// The release of a day as figures of the dam; `None` where nothing leaves it.
+fn at_dam(site: &Site, day: &SeasonDay) -> Option<Figures> {
+    let release = day.release?;
     let (temperature_c, oxygen) = (release.temperature_c, release.oxygen_below_mg_l);
     let saturation = site.saturation_below_mg_l(temperature_c, release.salt_g_per_kg);
-    Figures {
+    Some(Figures {
         mean_c: temperature_c,
         range_c: Some((temperature_c, temperature_c)),
         hourly_change_c: None,
@@ -183,7 +183,7 @@ fn at_dam(site: &Site, day: &SeasonDay) -> Figures {
         oxygen_min_mg_l: oxygen,
         oxygen_share: oxygen.filter(|_| saturation > 0.0).map(|o| (o / saturation, o / saturation)),
         flow_m3s: release.flow_m3s,
-    }
+    })
 }
 
 /// Whether a statistic is made of the means of days alone.

@@ -125,6 +125,8 @@ pub struct RawPoint {
     pub observed: Option<String>,
     /// Flow and stage.
     pub rating: Vec<(f64, f64)>,
+    /// Most that the stage may fall, m per hour.
+    pub stage_fall_m_per_hour: Option<f64>,
     /// Warning time, hours.
     pub warning_h: Option<f64>,
 }

@@ -108,6 +108,8 @@ pub struct Point {
     pub at_m: f64,
     /// Flow (m3/s) and stage (m), by flow; empty where none is given.
     pub rating: Vec<(f64, f64)>,
+    /// Most that the stage may fall, m per hour.
+    pub stage_fall_m_per_hour: Option<f64>,
     /// File of what its station recorded.
     pub observed: Option<String>,
     /// Warning time the site gives for a rise, hours.

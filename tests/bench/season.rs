@@ -85,6 +85,7 @@ impl Bench {
             skies,
             choosing: Choosing::By(strategy),
             decide_days: EVERY,
+            order: &gatemix::rank::Criterion::USUAL,
         }
     }
 
@@ -205,8 +206,9 @@ fn convergence() -> Option<()> {
     for (what, whole, half) in halved {
         let (whole, half) = (at(whole.0, whole.1)?, at(half.0, half.1)?);
         let days = whole.days.iter().zip(&half.days);
-        let apart: Vec<f64> =
-            days.map(|(a, b)| (a.release.temperature_c - b.release.temperature_c).abs()).collect();
+        let apart: Vec<f64> = days
+            .filter_map(|(a, b)| Some((a.release?.temperature_c - b.release?.temperature_c).abs()))
+            .collect();
         let mean = apart.iter().sum::<f64>() / apart.len().max(1) as f64;
         let most = apart.iter().copied().fold(0.0, f64::max);
         println!("{what} halved: the release moves by {mean:.3} C in the mean, {most:.3} C at most");

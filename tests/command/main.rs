@@ -22,6 +22,7 @@ mod records;
 mod refused;
 mod river;
 mod season;
+mod season_days;
 mod season_told;
 mod since;
 mod sorrel;

@@ -167,7 +167,7 @@ fn scenario_the_text_says_what_the_data_say_and_never_more() {
     let [usable, all] = ["usable_m3", "total_m3"].map(|key| format!("{:.2} hm3", number(&first[key]) / 1e6));
     assert!(text.contains("2025-08-01") && text.contains(&usable) && text.contains(&all), "{text}");
     match answer["exhausted_on"].as_str() {
-        Some(on) => assert!(text.contains(&format!("from {on} on no allowed mix")), "{text}"),
+        Some(on) => assert!(text.contains(&format!("from {on} on even the coldest mix allowed")), "{text}"),
         None => assert!(text.contains("Runs out not"), "{text}"),
     }
     for word in ["compliant", "legal", "acceptable", "probability", "chance"] {

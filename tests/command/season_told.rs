@@ -98,7 +98,10 @@ fn scenario_cold_water_runs_out_while_the_deep_gate_is_out() {
     let on = back["exhausted_on"].as_str().unwrap();
     assert!(["2025-08-10", "2025-08-11"].contains(&on), "{on}");
     assert_eq!(back["exhausted_until"], "2025-08-25");
-    assert!(in_words(&folder, &[]).contains(&format!("from {on} on no allowed mix")));
+    let text = in_words(&folder, &[]);
+    assert!(text.contains(&format!("from {on} on even the coldest mix allowed is too warm")), "{text}");
+    assert!(text.contains("from 2025-08-25 on one is cold enough again"), "{text}");
+    assert!(text.contains("; then outage until 2025-08-20, hoist"), "{text}");
     let gone = season(&folder, &["--plan", "gone"]);
     assert_eq!((&gone["exhausted_on"], &gone["exhausted_until"]), (&back["exhausted_on"], &Value::Null));
     let text = in_words(&folder, &["--plan", "gone"]);

@@ -84,13 +84,14 @@ fn scenario_a_mix_inside_a_season_is_near_that_of_the_full_ranking() {
                 skies: &skies,
                 choosing: Choosing::By(Strategy::Best),
                 decide_days: 7,
+                order: &gatemix::rank::Criterion::USUAL,
             };
             let run = run(&setup, &|_| ControlFlow::Continue(())).unwrap();
             let (Some(full), Some(inside)) = (ranking.mixes.first(), run.days.first()) else {
                 assert!(ranking.mixes.is_empty() && run.ended.is_some(), "{name} {begins}: {:?}", run.ended);
                 continue;
             };
-            let (full_c, inside_c) = (full.temperature_c, inside.release.temperature_c);
+            let (full_c, inside_c) = (full.temperature_c, inside.release.unwrap().temperature_c);
             let order = Order::of(&question);
             let outside = [full_c, inside_c].map(|c| order.off_c(c).0);
             println!("{name} {begins}: full {full_c:.2} C, inside {inside_c:.2} C, outside {outside:.2?}");

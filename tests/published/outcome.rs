@@ -92,12 +92,17 @@ fn day(number: u64) -> SeasonDay {
         inflow_m3s: 10.0,
         gates: vec![Gate { outlet: 1, opening: 1.0, flow_m3s: 20.0 }],
         drawn: Vec::new(),
-        release,
+        release: Some(release),
         points: None,
         layers: layers(10.0, 55.0),
         balance: Balance::default(),
         overturned: false,
     }
+}
+
+/// What leaves on a day, to be changed.
+fn left(day: &mut SeasonDay) -> &mut Blend {
+    day.release.as_mut().unwrap()
 }
 
 fn decision(number: u64, attainable_c: Option<[f64; 2]>) -> Decision {
@@ -136,6 +141,7 @@ fn of(site: &Site, days: Vec<SeasonDay>, decisions: Vec<Decision>, outages: Vec<
         skies: &skies,
         choosing: Choosing::By(Strategy::Best),
         decide_days: 7,
+        order: &gatemix::rank::Criterion::USUAL,
     };
     let run = Run {
         plan: "p".into(),
@@ -285,7 +291,7 @@ fn scenario_releases_beyond_their_bounds_are_told() {
     let site = checked(&format!("{SITE}release: {{ min: 15, max: 30 }}\n"));
     let mut season = days(8);
     for (day, flow_m3s) in season.iter_mut().zip([20.0, 14.9, 12.0, 13.0, 15.0, 30.1, 30.0, 34.0]) {
-        day.release.flow_m3s = flow_m3s;
+        left(day).flow_m3s = flow_m3s;
     }
     let out = of(&site, season, Vec::new(), Vec::new());
     let told: Vec<(&str, NaiveDate)> = out.warnings.iter().map(|w| (w.kind, w.date)).collect();
@@ -301,10 +307,10 @@ fn scenario_a_day_outside_by_warmth_and_oxygen_counts_once() {
     let mut season: Vec<SeasonDay> = (0..40).map(day).collect();
     for (i, warm, poor) in [(2, true, true), (3, false, true), (5, true, false), (35, true, false)] {
         if warm {
-            season[i].release.temperature_c = 13.0;
+            left(&mut season[i]).temperature_c = 13.0;
         }
         if poor {
-            season[i].release.oxygen_below_mg_l = Some(6.0);
+            left(&mut season[i]).oxygen_below_mg_l = Some(6.0);
         }
     }
     let out = of(&site, season, Vec::new(), Vec::new());
@@ -343,7 +349,7 @@ fn scenario_degree_days_reach_their_stages() {
 fn scenario_deep_water_drawn_from_the_start_is_told_where_it_grows() {
     let (site, mut season) = (checked(SITE), days(3));
     for (day, share) in season.iter_mut().zip([0.2, 0.24, 0.26]) {
-        day.release.oxygen_low_share = share;
+        left(day).oxygen_low_share = share;
     }
     let told = &of(&site, season, Vec::new(), Vec::new()).warnings[0];
     assert_eq!((told.kind, told.date), ("deep-water", date("2026-08-03")));
@@ -354,8 +360,8 @@ fn scenario_deep_water_drawn_from_the_start_is_told_where_it_grows() {
 fn scenario_what_to_beware_of() {
     let site = checked(SITE);
     let mut season = days(5);
-    season[2].release.oxygen_low_share = 0.2;
-    season[3].release.oxygen_below_mg_l = Some(5.5);
+    left(&mut season[2]).oxygen_low_share = 0.2;
+    left(&mut season[3]).oxygen_below_mg_l = Some(5.5);
     season[3].overturned = true;
     // 55.5 at the start; half a metre, then a whole one
     season[4].pool_m = 54.0;
@@ -391,7 +397,56 @@ fn scenario_what_to_beware_of() {
     // what was drawn from the start is not new
     let mut all = days(3);
     for day in &mut all {
-        day.release.oxygen_low_share = 0.2;
+        left(day).oxygen_low_share = 0.2;
     }
     assert!(of(&site, all, Vec::new(), Vec::new()).warnings.is_empty());
+}
+
+#[test]
+fn scenario_a_stage_that_falls_faster_than_allowed_is_told() {
+    let limited = |most: &str| checked(&SITE.replace("[100, 2]]", &format!("[100, 2]], {most}")));
+    let figures = |flow_m3s: f64| Figures {
+        mean_c: 10.0,
+        range_c: None,
+        hourly_change_c: None,
+        oxygen_mean_mg_l: None,
+        oxygen_min_mg_l: None,
+        oxygen_share: None,
+        flow_m3s,
+    };
+    let mut season = days(5);
+    // a change is made in two hours and 50 m3/s are a metre of stage: 0.2, 0, 0.1 and 0.1 m an hour
+    for (day, flow) in season.iter_mut().zip([60.0, 40.0, 40.0, 30.0, 20.0]) {
+        day.points = Some(vec![figures(flow)]);
+    }
+    let told = |site: &Site| -> Vec<(&'static str, NaiveDate, String)> {
+        let out = of(site, season.clone(), Vec::new(), Vec::new());
+        out.warnings.into_iter().map(|w| (w.kind, w.date, w.words)).collect()
+    };
+    let over = told(&limited("max_stage_fall_per_hour: 0.15"));
+    assert_eq!((over.len(), over[0].0, over[0].1), (1, "max_stage_fall_per_hour", date("2026-08-02")));
+    assert!(over[0].2.starts_with("the stage at Ford can fall by more than"), "{}", over[0].2);
+    assert!(over[0].2.contains("on 1 of 5 days"), "{}", over[0].2);
+    assert!(told(&limited("max_stage_fall_per_hour: 5 cm"))[0].2.contains("on 3 of 5 days"));
+    assert!(told(&limited("max_stage_fall_per_hour: 0.2")).is_empty(), "just at the limit");
+    assert!(told(&checked(SITE)).is_empty());
+}
+
+#[test]
+fn scenario_an_outage_is_told_by_its_dates() {
+    let site = checked(SITE);
+    let outage = |to: Option<NaiveDate>, reason: &str| {
+        vec![Outage { outlet: 2, from: begin(), to, reason: reason.into() }]
+    };
+    let why = |outages: Vec<Outage>| {
+        let out = of(&site, days(6), Vec::new(), outages);
+        let low = out.gates.into_iter().find(|g| g.outlet == 2).unwrap();
+        (low.first_day, low.reason.unwrap().1)
+    };
+    let until = Some(date("2026-08-03"));
+    assert_eq!(
+        why(outage(until, "hoists renewed")),
+        (Some(date("2026-08-04")), "outage until 2026-08-03, hoists renewed".to_owned())
+    );
+    assert_eq!(why(outage(None, "")), (None, "outage with no end told".to_owned()));
 }

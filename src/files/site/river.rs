@@ -108,6 +108,7 @@ fn point(read: &In, map: &Map) -> RawPoint {
             .iter()
             .filter_map(|row| pair(read, row, [Dimension::Flow, Dimension::Length]))
             .collect(),
+        stage_fall_m_per_hour: read.optional(map, "max_stage_fall_per_hour", Dimension::Length),
         warning_h: number(map, "warning_hours"),
     }
 }

@@ -30,6 +30,7 @@ pub fn season(context: &Context, answer: &SeasonAnswer) -> String {
         begins: answer.begins.to_string(),
         decides: answer.decides.to_string(),
         decide_days: answer.decide_days,
+        order: answer.order.iter().map(|criterion| criterion.name()).collect(),
         run: spoken,
         runs: answer.others.iter().map(|r| run(site, answer, r)).collect(),
         warnings: warnings(&answer.notes),
@@ -135,12 +136,12 @@ fn day(site: &Site, of: &SeasonRun, day: &SeasonDay, cold: Option<&ColdWater>, a
         pool_m: day.pool_m,
         inflow_m3s: day.inflow_m3s,
         setting: setting(site, &Setting::of(day.gates.clone())),
-        release: ReleaseJson {
-            flow_m3s: day.release.flow_m3s,
-            temperature_c: day.release.temperature_c,
-            oxygen_mg_l: day.release.oxygen_mg_l,
-            oxygen_below_mg_l: day.release.oxygen_below_mg_l,
-        },
+        release: day.release.map(|release| ReleaseJson {
+            flow_m3s: release.flow_m3s,
+            temperature_c: release.temperature_c,
+            oxygen_mg_l: release.oxygen_mg_l,
+            oxygen_below_mg_l: release.oxygen_below_mg_l,
+        }),
         points: day.points.as_ref().map(arrives),
         cold_water_m3: cold.and_then(|c| c.days.get(at)?.usable_m3),
         attainable_c: decided.and_then(|d| d.attainable_c),
@@ -233,9 +234,11 @@ fn stage(site: &Site, of: &StageDate) -> Option<StageJson> {
 }
 
 fn stage_fall(site: &Site, of: &StageFall) -> Option<StageFallJson> {
+    let point = site.river.as_ref()?.points.get(of.point)?;
     Some(StageFallJson {
-        point: site.river.as_ref()?.points.get(of.point)?.name.clone(),
+        point: point.name.clone(),
         fall_m_per_hour: of.m_per_hour,
+        allowed_m_per_hour: point.stage_fall_m_per_hour,
         on: of.date.to_string(),
     })
 }

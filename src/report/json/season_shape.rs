@@ -11,6 +11,7 @@ pub(super) struct SeasonJson {
     pub(super) begins: String,
     pub(super) decides: String,
     pub(super) decide_days: u32,
+    pub(super) order: Vec<&'static str>,
     #[serde(flatten)]
     pub(super) run: RunJson,
     pub(super) runs: Vec<RunJson>,
@@ -68,7 +69,8 @@ pub(super) struct DayJson {
     pub(super) inflow_m3s: f64,
     #[serde(flatten)]
     pub(super) setting: SettingJson,
-    pub(super) release: ReleaseJson,
+    /// Null where nothing leaves the dam.
+    pub(super) release: Option<ReleaseJson>,
     pub(super) points: Option<Vec<PointJson>>,
     /// Usable water below the first threshold of the site.
     pub(super) cold_water_m3: Option<f64>,
@@ -191,6 +193,8 @@ pub(super) struct StageJson {
 pub(super) struct StageFallJson {
     pub(super) point: String,
     pub(super) fall_m_per_hour: f64,
+    /// Most that is allowed; null where no limit is given.
+    pub(super) allowed_m_per_hour: Option<f64>,
     pub(super) on: String,
 }
 

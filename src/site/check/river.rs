@@ -66,6 +66,12 @@ fn point(p: &RawPoint, i: usize, end_m: Option<f64>, problems: &mut Vec<Problem>
         problems.push(Problem::refused("outside-river", words, "correct at_km, or add a reach").at(&path));
     }
     not_negative(p.warning_h, format!("{path}.warning_hours"), "warning_hours", problems);
+    let fall = format!("{path}.max_stage_fall_per_hour");
+    if p.stage_fall_m_per_hour.is_some() && p.rating.is_empty() {
+        let words = "a limit of the fall of the stage, and no rating tells the stage";
+        problems.push(Problem::refused("stage-fall", words, "give the point a rating").at(&fall));
+    }
+    positive(p.stage_fall_m_per_hour, fall, "max_stage_fall_per_hour", problems);
     let rising = p.rating.windows(2).all(|rows| match *rows {
         [(q0, s0), (q1, s1)] => q0 < q1 && s0 < s1,
         _ => true,
@@ -84,6 +90,7 @@ fn point(p: &RawPoint, i: usize, end_m: Option<f64>, problems: &mut Vec<Problem>
         name: p.name.clone()?,
         at_m: p.at_m?.min(end_m?),
         rating: p.rating.clone(),
+        stage_fall_m_per_hour: p.stage_fall_m_per_hour,
         observed: p.observed.clone(),
         warning_h: p.warning_h,
     })

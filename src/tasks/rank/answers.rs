@@ -143,7 +143,7 @@ impl Answers<'_> {
         let nearest = if self.question.order.iter().take(2).all(targets_first) {
             mixes.first()?.clone()
         } else {
-            let order = Criterion::NAMES.map(|c| c.1);
+            let order = Criterion::USUAL;
             let question = Question { order: &order, ..*self.question };
             let ranking = search(&question, progress).ok()?;
             self.kitchen.ranked(ranking.mixes.first()?, 0)?
@@ -248,7 +248,7 @@ impl Answers<'_> {
         }
         let low = q.site.release.min_m3s.unwrap_or(asked_m3s / 10.0);
         let high = q.site.release.max_m3s.unwrap_or(2.0 * asked_m3s).max(low);
-        let order = Criterion::NAMES.map(|c| c.1);
+        let order = Criterion::USUAL;
         let quiet = |_: f64| progress(0.0);
         let meeting = |flow_m3s: f64| {
             let blocks = [(1.0, flow_m3s)];

@@ -115,7 +115,7 @@ pub(super) fn plan(context: &Context, asked: &RankAsked) -> Result<Plan, Failure
 }
 
 /// The criteria in an order: those named first, the rest as usual.
-fn order(typed: Option<&str>) -> Result<Vec<Criterion>, Failure> {
+pub(in crate::tasks) fn order(typed: Option<&str>) -> Result<Vec<Criterion>, Failure> {
     let mut out: Vec<Criterion> = Vec::new();
     for name in typed.into_iter().flat_map(|t| t.split(',')).map(str::trim) {
         let Some((_, criterion)) = Criterion::NAMES.iter().find(|(n, _)| *n == name) else {

@@ -20,6 +20,7 @@ use super::{Context, Failure, now_setting, setting};
 
 pub use crate::mix::split::Part;
 pub use answers::{Least, Lost, Pocket, PreferredSplit, Root, Trade};
+pub(super) use asked::order;
 pub use asked::{RankAsked, ReleaseFrom};
 pub use shown::{Shown, ShownPart, Unsure};
 

@@ -7,8 +7,10 @@ use chrono::NaiveDate;
 use crate::files::folder::ListedPlan;
 use crate::files::text::Source;
 use crate::problem::{Problem, Weight};
-use crate::season::{Choosing, Plan, Skies};
+use crate::rank::Criterion;
+use crate::season::{Choosing, Plan, Schedule, Skies};
 use crate::site::{self, Strategy};
+use crate::tasks::rank::order;
 use crate::tasks::{Context, Failure};
 use crate::units::System;
 
@@ -25,8 +27,17 @@ pub struct SeasonAsked {
     pub schedule: Option<String>,
     /// Days between decisions; the site's own when absent.
     pub every: Option<String>,
+    /// Criteria by name, comma between; those not named follow in their usual order.
+    pub order: Option<String>,
     /// The setting now, gate by gate; empty for the site's own.
     pub now: Vec<String>,
+}
+
+impl SeasonAsked {
+    /// Name of what chooses the gates, where that is asked.
+    pub fn chooses(&self) -> Option<String> {
+        self.schedule.as_deref().map(Schedule::called).or_else(|| self.strategy.clone())
+    }
 }
 
 /// Most days between decisions.
@@ -59,6 +70,8 @@ pub(super) struct Understood {
     pub(super) choosing: Choosing,
     /// Days between decisions.
     pub(super) decide_days: u32,
+    /// What counts first where the mix of a day is chosen.
+    pub(super) order: Vec<Criterion>,
     /// The first day.
     pub(super) begins: NaiveDate,
     /// The first day on which gates may be moved.
@@ -97,6 +110,7 @@ pub(super) fn understood(context: &Context, asked: &SeasonAsked) -> Result<Under
         cases,
         choosing,
         decide_days,
+        order: order(asked.order.as_deref())?,
         begins,
         decides,
     })

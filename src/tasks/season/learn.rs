@@ -9,7 +9,7 @@ use crate::files::text::Source;
 use crate::mix::Setting;
 use crate::problem::{Problem, Weight};
 use crate::profile::Profile;
-use crate::rank::Progress;
+use crate::rank::{Criterion, Progress};
 use crate::season::{Choosing, Learned, Plan, Setup, Skies, learn as fit, passed, past};
 use crate::site::{Case, Strategy};
 use crate::tasks::{Context, Failure};
@@ -95,6 +95,7 @@ pub fn learn(context: &Context, asked: &LearnAsked, progress: Progress) -> Resul
         skies: &skies,
         choosing: gates.choosing.clone(),
         decide_days: context.site().season.decide_days,
+        order: &Criterion::USUAL,
     };
     let run = passed(&setup, progress).ok_or(Failure::Stopped)?;
     if let Some(ended) = &run.ended {

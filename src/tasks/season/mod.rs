@@ -13,6 +13,7 @@ use std::sync::Arc;
 use chrono::NaiveDate;
 
 use crate::problem::Problem;
+use crate::rank::Criterion;
 use crate::season::{Layers, Outcome, Plan, Run, Skies};
 
 use super::{Context, Failure};
@@ -69,6 +70,10 @@ pub struct SeasonAnswer {
     pub decides: NaiveDate,
     /// Days between decisions.
     pub decide_days: u32,
+    /// What counts first where the mix of a day is chosen.
+    pub order: Vec<Criterion>,
+    /// Files of the gate schedules of the folder.
+    pub schedules: Vec<String>,
     /// Plans that were refused, and what was assumed.
     pub notes: Vec<Problem>,
     /// Fingerprint of the inputs, plans and all.
@@ -120,6 +125,7 @@ pub fn season(
     let table = table::Table { context, understood: &understood, now: now.as_ref() };
     let main = table.main(progress)?;
     let others = table.others(&main, progress, &mut notes)?;
+    notes.extend(notes::nearer(&main, &others, &understood.order));
     if progress(1.0).is_break() {
         return Err(Failure::Stopped);
     }
@@ -129,6 +135,8 @@ pub fn season(
         begins: understood.begins,
         decides: if now.is_some() { understood.decides } else { understood.begins },
         decide_days: understood.decide_days,
+        order: understood.order.clone(),
+        schedules: context.folder.schedules(),
         notes,
         fingerprint: understood.fingerprint.clone(),
     })

@@ -100,7 +100,7 @@ pub fn needed(
     Ok(NeededAnswer {
         date,
         threshold_c,
-        strategy: of.choosing.name().to_owned(),
+        strategy: of.choosing.name(),
         begins: of.begins,
         decide_days: of.decide_days,
         cases,

@@ -5,11 +5,16 @@ use std::collections::BTreeSet;
 use chrono::Datelike;
 
 use crate::problem::{Problem, Weight};
+use crate::rank::Criterion;
 use crate::season::Choosing;
 use crate::tasks::Context;
 use crate::units::say;
 
+use super::SeasonRun;
 use super::asked::{Case, Understood};
+
+/// A miss that is shown as less, C (choice: the tenth of a degree shown).
+const SEEN_C: f64 = 0.1;
 
 /// Notes on the plans, the cases and the model.
 pub(super) fn notes(context: &Context, of: &Understood) -> Vec<Problem> {
@@ -93,6 +98,46 @@ fn years(context: &Context, of: &Understood) -> Vec<Problem> {
         out.push(Problem::note("years-left-out", words));
     }
     out
+}
+
+/// Strategies beside the one spoken of, in the same case under the same plan, that come out nearer to the targets: a
+/// mix is chosen for its day, by what counts first there.
+pub(super) fn nearer(main: &SeasonRun, others: &[SeasonRun], order: &[Criterion]) -> Vec<Problem> {
+    let (name, score) = (&main.run.strategy, &main.outcome.score);
+    let same = |other: &&SeasonRun| {
+        let of = &other.run;
+        other.plan.file == main.plan.file && of.case == main.run.case && of.strategy != *name
+    };
+    let of = |other: &SeasonRun| {
+        let (than, beside) = (&other.outcome.score, &other.run.strategy);
+        let fewer = score.days_outside.saturating_sub(than.days_outside);
+        let milder_c = score.worst_c - than.worst_c;
+        let days = (fewer > 0).then(|| {
+            let days = if fewer == 1 { "day" } else { "days" };
+            format!("{fewer} fewer {days} outside the hard targets")
+        });
+        let [worst, here] = [than.worst_c, score.worst_c].map(|c| say::dc(c, 1));
+        let worst =
+            (milder_c >= SEEN_C).then(|| format!("a worst miss of their ranges of {worst} against {here}"));
+        let gains: Vec<String> = [days, worst].into_iter().flatten().collect();
+        if gains.is_empty() || than.lost != score.lost {
+            return None;
+        }
+        let least = |run: &SeasonRun| run.outcome.least_oxygen.map(|least| least.0);
+        let oxygen = least(other).zip(least(main)).map_or_else(String::new, |(there, here)| {
+            format!(
+                "; the lowest oxygen below the dam is {there:.1} mg/L under `{beside}` and {here:.1} here"
+            )
+        });
+        let names: Vec<&str> = order.iter().map(|criterion| criterion.name()).collect();
+        let words = format!(
+            "`{beside}` has {}: each mix of `{name}` is chosen for its day, in the order {}{oxygen}",
+            gains.join(" and "),
+            names.join(", ")
+        );
+        Some(Problem::note("order-of-the-day", words))
+    };
+    others.iter().filter(same).filter_map(of).collect()
 }
 
 /// A plan beside the one spoken of that is refused, by its first problem.

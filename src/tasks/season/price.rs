@@ -65,6 +65,8 @@ pub fn prices(
         plan: &of.plan,
         skies: &skies,
         decide_days: of.decide_days,
+        // what counts first in the list counts first later
+        order: &answer.order,
     };
     let mut mixes = season::prices(&pricing, &mixes, progress).ok_or(Failure::Stopped)?;
     if now.is_some() && !mixes.is_empty() {

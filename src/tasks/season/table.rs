@@ -125,6 +125,7 @@ impl Table<'_> {
             skies,
             choosing,
             decide_days: of.decide_days,
+            order: &of.order,
         }
     }
 

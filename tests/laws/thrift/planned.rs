@@ -8,7 +8,7 @@ use gatemix::season::{Setup, outcome, run};
 use gatemix::site::Strategy;
 
 use super::strategies::OF;
-use super::tiny::{AREA_M2, SURFACE_M, Tiny};
+use super::tiny::{AREA_M2, Of, SURFACE_M, Tiny};
 
 /// A table that begins with water below the bed changes nothing of a season.
 #[test]
@@ -24,7 +24,7 @@ fn law_water_below_the_bed_is_no_water_of_the_season() {
     });
     assert_eq!((plain.days.len(), raised.days.len()), (10, 10), "{:?}", raised.ended);
     for (a, b) in plain.days.iter().zip(&raised.days) {
-        assert!((a.release.flow_m3s - b.release.flow_m3s).abs() < 1e-6, "{}", b.release.flow_m3s);
+        assert!((a.release_m3s() - b.release_m3s()).abs() < 1e-6, "{}", b.release_m3s());
         assert!((a.pool_m - b.pool_m).abs() < 1e-6);
     }
 }
@@ -93,4 +93,48 @@ fn law_limits_of_the_change_bind_the_mix_and_not_what_is_within_reach() {
     assert!(bound.iter().all(|d| d.moves <= 1 && d.past.is_empty()), "{bound:?}");
     let [free, bound] = [&free[0], &bound[0]].map(|d| d.attainable_c.unwrap());
     assert!((free[0] - bound[0]).abs() < 0.02 && (free[1] - bound[1]).abs() < 0.02, "{free:?} {bound:?}");
+}
+
+/// What a level can pass beyond the last whole tenth of the release is within reach, and may be what reaches the target.
+#[test]
+fn law_what_is_within_reach_is_not_cut_to_tenths() {
+    // cold water up to 11 m and one gate in it, which passes 37 % of the release
+    let of = Of { gates: 2, thermocline_m: 11.0, early_high_c: 16.3, late_high_c: 16.3, ..OF };
+    let few = |text: String| text.replace("name: G0,", "name: G0, flow: { max: 0.444 },");
+    let tiny = Tiny::edited(of, &few);
+    let skies = tiny.skies(0.0);
+    let setup = tiny.setup(&skies, gatemix::season::Choosing::By(Strategy::Best));
+    let run = run(&setup, &|_| ControlFlow::Continue(())).unwrap();
+    let share = |at: f64| at * of.cold_c + (1.0 - at) * of.warm_c;
+    let coldest_c = run.decisions[0].attainable_c.unwrap()[0];
+    assert!(share(0.3) > of.early_high_c && share(0.37) < of.early_high_c);
+    assert!((coldest_c - share(0.37)).abs() < 0.2, "{coldest_c} of {}", share(0.37));
+    assert!(outcome(&setup, &run).exhausted.on() != Some(run.decisions[0].date));
+}
+
+/// A flood that passes the whole release over a free crest leaves the gates as they are asked.
+#[test]
+fn law_a_flood_over_a_free_crest_does_not_lose_what_is_held() {
+    let crest = "  - { name: Spill, kind: crest, centre: 24.5, width: 0.2 }\ntargets:\n";
+    let mut tiny = Tiny::edited(OF, &|text| text.replacen("targets:\n", crest, 1));
+    for (i, day) in tiny.plan.days.iter_mut().enumerate() {
+        // it rises over the crest by the third day, and what spills until the seventh is more than is asked
+        day.inflow_m3s = if i < 2 { 2.5 } else { 0.8 };
+        day.release_m3s = Some(if (2..7).contains(&i) { 0.2 } else { 1.2 });
+    }
+    let now = Setting::of(vec![Gate { outlet: 1, opening: 1.0, flow_m3s: 1.2 }]);
+    let skies = tiny.skies(0.0);
+    let hold = gatemix::season::Choosing::By(Strategy::Hold);
+    let setup = Setup { now: Some(&now), ..tiny.setup(&skies, hold) };
+    let run = run(&setup, &|_| ControlFlow::Continue(())).unwrap();
+    assert_eq!(run.days.len(), 10, "{:?}", run.ended);
+    let flow = |day: usize, outlet: usize| {
+        let gates = run.days[day].gates.iter().filter(|g| g.outlet == outlet);
+        gates.map(|g| g.flow_m3s).sum::<f64>()
+    };
+    // a decision is due while only the crest passes water
+    let due = run.decisions.iter().filter_map(|d| run.days.iter().position(|day| day.date == d.date));
+    assert!(due.into_iter().any(|day| flow(day, 3) > 0.2 && flow(day, 1) <= 0.0), "{:?}", run.decisions);
+    assert!(flow(9, 1) > 0.1 && flow(9, 0) + flow(9, 2) <= 0.0, "{:?}", run.days[9].gates);
+    assert!(run.decisions.iter().all(|d| d.moves == 0), "{:?}", run.decisions);
 }

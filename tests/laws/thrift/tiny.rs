@@ -141,6 +141,7 @@ impl Tiny {
             skies,
             choosing,
             decide_days: self.of.every,
+            order: &gatemix::rank::Criterion::USUAL,
         }
     }
 

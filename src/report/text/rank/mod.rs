@@ -93,7 +93,7 @@ fn asked(context: &Context, answer: &RankAnswer, system: System) -> String {
     let step = 100.0 / answer.steps as f64;
     let out = format!("{}, split in steps of {step:.3}", release(context, answer, system));
     let mut out = out.trim_end_matches('0').trim_end_matches('.').to_owned() + " %";
-    if answer.order != Criterion::NAMES.map(|c| c.1) {
+    if answer.order != Criterion::USUAL {
         let by: Vec<&str> = answer.order.iter().map(|c| c.name()).collect();
         let _ = write!(out, "; ordered by {}", by.join(", "));
     }

@@ -1,5 +1,6 @@
 //! The dam and every point side by side: when water arrives there, what it is, what would be asked of the release.
 
+use crate::mix::limits::change_times;
 use crate::problem::harmless;
 use crate::river::AtPoint;
 use crate::site::{Point, River};
@@ -213,7 +214,15 @@ pub fn stage_words(context: &Context, answer: &RiverAnswer, point: usize, system
             return Some(format!("{} leaves the stage as it is now", which.word()));
         }
         let change = if by < 0.0 { "lowers" } else { "raises" };
-        Some(format!("{} {change} the stage by {}", which.word(), length(by.abs(), system)))
+        let fall = point_at.stage_fall_m_per_hour.filter(|_| by < 0.0);
+        let against = fall.map_or_else(String::new, |most_m| {
+            // the river spreads a change out: it falls no faster than it is made at the dam
+            let (hours, _) = change_times(context.site());
+            let word = if -by / hours > most_m { "MORE THAN THE" } else { "of" };
+            let [fastest, most] = [-by / hours, most_m].map(|m| length(m, system));
+            format!(", by up to {fastest} in an hour, {word} {most} allowed")
+        });
+        Some(format!("{} {change} the stage by {}{against}", which.word(), length(by.abs(), system)))
     });
     let words: Vec<String> = words.collect();
     (!words.is_empty()).then(|| words.join(", "))

@@ -31,7 +31,7 @@ fn gate(context: &Context, life: &GateLife, system: System) -> String {
         return format!("{name:<NAME$}not on any day: {}", reason.unwrap_or_default());
     };
     let Some(last) = life.last_day else {
-        let before = reason.map_or_else(String::new, |why| format!("; not before: {why}"));
+        let before = reason.map_or_else(String::new, |why| format!("; before that: {why}"));
         return format!("{name:<NAME$}from {first} to the end{before}");
     };
     let book = life.book_by.map_or_else(String::new, |by| format!("; open then: {}", book(context, by)));

@@ -32,18 +32,20 @@ pub(super) fn first(context: &Context, answer: &SeasonAnswer, system: System) ->
 
 /// When no allowed mix reaches a target any more.
 pub fn exhausted(outcome: &Outcome) -> String {
-    let what = "no allowed mix comes down to the high of the target at the dam at the release of the day";
+    let what = "even the coldest mix allowed is too warm for the target at the dam";
     match (&outcome.exhausted, outcome.exhausted_until) {
         (Exhausted::On(date), None) => {
             let last = outcome.exhausted_last.unwrap_or(*date);
             format!("from {date} on {what}; to {last}, the last day of decision on which a rule asks")
         }
         (Exhausted::On(date), Some(until)) => {
-            format!("from {date} on {what}, until {until} (seen on days of decision)")
+            format!(
+                "from {date} on {what}; from {until} on one is cold enough again (looked at on days of decision)"
+            )
         }
         (Exhausted::NotBy(date), _) => {
             format!(
-                "not by {date}: on every day of decision an allowed mix comes down to the high of the target at the dam"
+                "not by {date}: on every day of decision a mix is allowed that is cold enough for the target at the dam"
             )
         }
         (Exhausted::Unknown(why), _) => format!("not known: {}", harmless(why)),

@@ -15,6 +15,7 @@ use chrono::NaiveDate;
 use unicode_width::UnicodeWidthStr;
 
 use crate::problem::{Problem, Weight, harmless};
+use crate::rank::Criterion;
 use crate::report::flags_of;
 use crate::season::{Exhausted, Run};
 use crate::tasks::Context;
@@ -110,8 +111,14 @@ fn gates_chosen(context: &Context, answer: &SeasonAnswer) -> String {
     } else {
         ""
     };
+    let order = if answer.order == Criterion::USUAL {
+        String::new()
+    } else {
+        let by: Vec<&str> = answer.order.iter().map(|criterion| criterion.name()).collect();
+        format!(", ordered by {}", by.join(", "))
+    };
     format!(
-        "{held}{}, decided every {}{solved}",
+        "{held}{}, decided every {}{order}{solved}",
         harmless(&strategy_words(&answer.main.run)),
         super::days(f64::from(answer.decide_days))
     )
@@ -123,7 +130,7 @@ pub fn strategy_words(run: &Run) -> String {
         "hold" => "the setting is held as long as no limit stands against it".to_owned(),
         "best" => "the best mix of the day".to_owned(),
         "thrift" => "release targets that spare cold water".to_owned(),
-        other => format!("gates as {other} says"),
+        other => format!("gates as the {other} says"),
     }
 }
 

@@ -60,20 +60,29 @@ fn fall(context: &Context, run: &SeasonRun, system: System) -> String {
     in_system(&words, system)
 }
 
-/// How fast the stage can fall at points with a rating; no limit of it is kept in a site file.
+/// How fast the stage can fall at points with a rating, against their limits.
 fn stage_falls(context: &Context, run: &SeasonRun, system: System) -> Vec<String> {
     let points = context.site().river.as_ref().map_or(&[][..], |r| &r.points);
     let hours = context.site().limits.change_hours;
     let made = hours.map_or_else(|| CHANGE_HOURS.to_owned(), |h| format!("in {h:.1} hours"));
     let of = |fall: &crate::season::StageFall| {
-        let name = harmless(&points.get(fall.point)?.name);
+        let point = points.get(fall.point)?;
+        let name = harmless(&point.name);
+        let limit = point.stage_fall_m_per_hour.map_or_else(
+            || "no limit of it is given".to_owned(),
+            |most| format!("{} allowed", say::m(most, 3)),
+        );
         let words = format!(
-            "the stage at {name} falls at most {} in an hour, on {}, where a change at the dam is made {made}; no limit of \
-             it is given",
+            "the stage at {name} falls at most {} in an hour, on {}, where a change at the dam is made {made}; {limit}",
             say::m(fall.m_per_hour, 3),
             fall.date
         );
         Some(in_system(&words, system))
     };
-    run.outcome.stage_falls.iter().filter_map(of).collect()
+    let mut out: Vec<String> = run.outcome.stage_falls.iter().filter_map(of).collect();
+    let is_closed = run.run.days.iter().any(|day| day.release.is_none());
+    if is_closed && points.iter().any(|point| !point.rating.is_empty()) {
+        out.push("the stage on days without a release, and its fall to them, is not known".to_owned());
+    }
+    out
 }

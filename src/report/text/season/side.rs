@@ -7,16 +7,20 @@ use crate::season::{Exhausted, TargetTally};
 use crate::tasks::season::{SeasonAnswer, SeasonRun, Seen};
 use crate::units::{Dimension, System, figure};
 
+use unicode_width::UnicodeWidthStr;
+
 use super::super::{fitted, wrapped};
 use super::short;
 
-/// Columns of the names together, of a plan's alone, and of each figure.
-const NAME: usize = 36;
-const PLAN: usize = 16;
-const CELLS: [usize; 5] = [8, 9, 9, 7, 7];
+/// Columns of the names together, and of each figure.
+const NAME: usize = 34;
+const CELLS: [usize; 6] = [8, 8, 8, 6, 7, 6];
+
+/// What follows a plan that is cut.
+const CUT: &str = "..";
 
 /// Heads of the figures, in the order of [`Row::cells`].
-pub const HEADS: [&str; 5] = ["runs out", "reserve", "outside", "worst", "moves"];
+pub const HEADS: [&str; 6] = ["runs out", "reserve", "outside", "worst", "oxygen", "moves"];
 
 /// One season.
 #[derive(Debug, Clone, PartialEq)]
@@ -24,7 +28,7 @@ pub struct Row {
     /// Plan, case and strategy.
     pub name: [String; 3],
     /// The figures below [`HEADS`].
-    pub cells: [String; 5],
+    pub cells: [String; 6],
     /// Solved with this very case in view.
     pub foresight: bool,
     /// What was in view when its gates were chosen.
@@ -52,6 +56,7 @@ pub fn side(answer: &SeasonAnswer, system: System) -> Vec<Row> {
                 outcome.under_reserve.as_ref().map_or_else(|| "-".to_owned(), date),
                 format!("{} d{marks}", score.days_outside),
                 figure(score.worst_c, unit, 1),
+                outcome.least_oxygen.map_or_else(|| "?".to_owned(), |least| format!("{:.1}", least.0)),
                 outcome.moves.to_string(),
             ],
             foresight: run.foresight,
@@ -95,7 +100,7 @@ fn date(of: &Exhausted) -> String {
     }
 }
 
-fn in_columns(cells: [&str; 5]) -> String {
+fn in_columns(cells: [&str; 6]) -> String {
     let wide: Vec<String> = cells.iter().zip(CELLS).map(|(cell, wide)| format!("{cell:>wide$}")).collect();
     wide.concat()
 }
@@ -124,20 +129,39 @@ pub fn columns(rows: &[Row]) -> Vec<String> {
             Seen::Weather => "+",
             Seen::All => "*",
         };
-        let [plan, case, strategy] = &row.name;
-        let name = fitted(&format!("{}, {case}, {strategy}", fitted(plan, PLAN).trim_end()), NAME - 1);
+        let name = fitted(&named(&row.name), NAME - 1);
         let cells = in_columns(row.cells.each_ref().map(String::as_str));
         format!("{mark}{seen}{name:<NAME$}{cells}").trim_end().to_owned()
     }));
     out
 }
 
+/// Plan, case and strategy in the columns of names, the plan cut after a word where it is too long.
+fn named([plan, case, strategy]: &[String; 3]) -> String {
+    let rest = format!(", {case}, {strategy}");
+    let room = (NAME - 1).saturating_sub(rest.width());
+    if plan.width() <= room {
+        return format!("{plan}{rest}");
+    }
+    let mut cut = String::new();
+    for word in plan.split_whitespace() {
+        let more = if cut.is_empty() { word.to_owned() } else { format!("{cut} {word}") };
+        if more.width() + CUT.len() > room {
+            break;
+        }
+        cut = more;
+    }
+    // a first word that is too long is cut itself
+    let cut = if cut.is_empty() { fitted(plan, room.saturating_sub(CUT.len())) } else { cut };
+    format!("{}{CUT}{rest}", cut.trim_end())
+}
+
 /// What the heads and the cells mean.
 pub fn meaning(rows: &[Row], system: System) -> String {
     let unit = system.unit(Dimension::TemperatureDifference);
     let mut out = format!(
-        "outside: days outside the hard targets, summed over them; worst: farthest outside, {}; not: not by the end of the \
-         season",
+        "outside: days outside the hard targets, summed over them; worst: farthest outside, {}; oxygen: lowest below the \
+         dam, mg/L; not: not by the end of the season",
         unit.symbol()
     );
     if rows.iter().any(|row| row.seen == Seen::All) {
@@ -156,4 +180,26 @@ pub fn meaning(rows: &[Row], system: System) -> String {
         out.push_str("; ?: a hard rule is not judged on any day");
     }
     out
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn law_a_plan_too_long_for_its_column_is_cut_after_a_word() {
+        let of = |plan: &str| {
+            let name = named(&[plan, "middling", "thrift"].map(str::to_owned));
+            assert!(name.width() < NAME && name.ends_with(", middling, thrift"), "{name}");
+            name
+        };
+        assert_eq!(of("planned"), "planned, middling, thrift");
+        assert_eq!(of("as in 3 of years"), "as in 3 of.., middling, thrift");
+        assert_eq!(of("as in other years"), "as in other.., middling, thrift");
+        assert_eq!(of("hydroelectric-maximum"), "hydroelectric.., middling, thrift");
+        assert!(
+            named(&["a", "a case with a name of its own and more", "best"].map(str::to_owned))
+                .starts_with("a")
+        );
+    }
 }

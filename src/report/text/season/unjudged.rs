@@ -21,12 +21,17 @@ pub(super) fn why(
     }
     let oxygen_known = |day: &SeasonDay| match point {
         Some(_) => arrives(day).is_some_and(|f| f.oxygen_mean_mg_l.is_some()),
-        None => day.release.oxygen_below_mg_l.is_some(),
+        None => day.release.is_some_and(|release| release.oxygen_below_mg_l.is_some()),
     };
     if oxygen && !days.iter().any(oxygen_known) {
         return "the oxygen is not known".to_owned();
     }
     let marks = if oxygen { &told.oxygen_days } else { &told.temperature_days };
+    let is_closed = |date| days.iter().any(|day| day.date == date && day.release.is_none());
+    let unknown = || marks.iter().filter(|(_, mark)| mark.standing == Standing::Unknown);
+    if unknown().next().is_some() && unknown().all(|(date, _)| is_closed(*date)) {
+        return "nothing is released".to_owned();
+    }
     let begun = marks.iter().position(|(_, mark)| mark.standing != Standing::Unknown);
     let first_only = begun.is_some_and(|at| marks[at..].iter().all(|(_, m)| m.standing != Standing::Unknown));
     if first_only {
