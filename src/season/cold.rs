@@ -27,7 +27,8 @@ pub(super) fn reaches_m(site: &Site, days: &[SeasonDay]) -> Vec<Option<f64>> {
     days.iter().scan(first, reach).collect()
 }
 
-fn reach_m(site: &Site, day: &SeasonDay, flow_m3s: f64) -> Option<f64> {
+/// The same of one day at a release (m3/s).
+pub(super) fn reach_m(site: &Site, day: &SeasonDay, flow_m3s: f64) -> Option<f64> {
     let column = day.layers.column(site)?;
     let states = mix::outlet_states(site, day.pool_m);
     let deepest = states.iter().rev().find(|s| usable(site, s.outlet, day.pool_m, day.date).is_ok())?;

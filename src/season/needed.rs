@@ -238,9 +238,11 @@ impl Search<'_> {
         Some(Found { least: least.amount, lower, remain: least.remain, tried: amounts })
     }
 
-    /// Lowest elevation within reach of the outlets usable on a day, m.
+    /// Lowest elevation within reach of the outlets usable on the date from a pool, m. On a date without a release at that
+    /// of the day before.
     fn reach_m(&self, day: &SeasonDay) -> Option<f64> {
-        cold::reaches_m(&self.site, std::slice::from_ref(day)).into_iter().next().flatten()
+        let release = self.going.run.days.iter().rev().find_map(|day| day.release);
+        cold::reach_m(&self.site, day, release.map_or(0.0, |release| release.flow_m3s))
     }
 
     /// The season with so much cold water (m3).

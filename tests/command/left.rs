@@ -80,7 +80,7 @@ fn scenario_what_must_be_left_stands_beside_what_is_left_in_every_case() {
     for word in ["compliant", "legal", "acceptable", "probability", "chance"] {
         assert!(!text.out.contains(word), "{word}");
     }
-    let customary = left(folder.named(), &["--units", "us"]).out;
+    let customary = left(folder.named(), &["2025-08-24", "--units", "us"]).out;
     assert!(customary.contains("acre-ft") && !customary.contains("hm3"), "{customary}");
 }
 
