@@ -184,7 +184,7 @@ pub struct Reached {
     pub attainable_c: Option<[f64; 2]>,
     /// What the rules ask.
     pub asks: Vec<Asks>,
-    /// What called for the decision; `None` where its time had come, or a limit forced it.
+    /// What called for the decision, or the limit that forced it; `None` where its time had come.
     pub because: Option<String>,
 }
 

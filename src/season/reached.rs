@@ -10,6 +10,8 @@ use crate::site::Site;
 use crate::target::Figure;
 
 use super::called::because;
+use super::decide::{Decision, Why};
+use super::gates;
 use super::outcome::{Asks, Exhausted, Reached, Spell};
 use super::run::{Run, Setup};
 
@@ -25,9 +27,15 @@ pub(super) fn reached(setup: &Setup, site: &Site, run: &Run) -> Vec<Reached> {
             date: decision.date,
             attainable_c: decision.attainable_c,
             asks: asks(setup, site, decision.date),
-            because: because(site, decision),
+            because: forced(site, decision).or_else(|| because(site, decision)),
         })
         .collect()
+}
+
+/// The limit that forces a decision, in words.
+fn forced(site: &Site, decision: &Decision) -> Option<String> {
+    let Why::Forced(check) = decision.why else { return None };
+    Some(gates::why(site, &check, true).1)
 }
 
 /// Ranges that the hard rules at the dam leave to the temperature of a steady day, buffer counted in.

@@ -6,6 +6,7 @@
 mod beware;
 mod decided;
 mod gas;
+mod gates;
 mod layering;
 mod mix;
 mod observed;

@@ -6,7 +6,6 @@ use std::sync::Arc;
 use approx::assert_abs_diff_eq;
 use chrono::{Days, NaiveDate};
 use gatemix::files::site::site;
-use gatemix::mix::limits::Move;
 use gatemix::mix::{Asked, Blend, Gate};
 use gatemix::profile::{self, Profile};
 use gatemix::river::Conditions;
@@ -55,7 +54,7 @@ pub(crate) fn checked(text: &str) -> Site {
 }
 
 /// Cold water of 6 C up to an elevation, 20 C above.
-fn layers(cold_m: f64, pool_m: f64) -> Layers {
+pub(crate) fn layers(cold_m: f64, pool_m: f64) -> Layers {
     let layer = |height_m: f64, temperature_c: f64| Layer {
         volume_m3: 1e6 * height_m,
         temperature_c,
@@ -105,7 +104,7 @@ pub(crate) fn left(day: &mut SeasonDay) -> &mut Blend {
     day.release.as_mut().unwrap()
 }
 
-fn decision(number: u64, attainable_c: Option<[f64; 2]>) -> Decision {
+pub(crate) fn decision(number: u64, attainable_c: Option<[f64; 2]>) -> Decision {
     Decision {
         date: begin() + Days::new(number),
         why: if number == 0 { Why::Begin } else { Why::Due },
@@ -256,54 +255,30 @@ fn scenario_it_runs_out_on_the_first_day_no_mix_comes_down_to_the_high() {
 }
 
 #[test]
-fn scenario_gates_are_lost_by_a_falling_pool_and_come_with_a_rising_one() {
+fn scenario_how_near_it_comes_to_running_out_is_told() {
     let site = checked(SITE);
-    let mut season = days(6);
-    // the high gate wants 3 m over its top at 46 m; a day goes by the pool of its morning, 55.5 m on the first
-    for (day, pool_m) in season.iter_mut().zip([49.0, 48.9, 48.0, 49.5, 50.0, 50.0]) {
-        day.pool_m = pool_m;
-        day.layers = layers(10.0, pool_m);
-    }
-    // shut on the first day of too little water, as a limit forces it
-    let shut = Decision {
-        moved: vec![Move { outlet: 0, from: 1.0, to: 0.0, from_m3s: 5.0, to_m3s: 0.0 }],
-        lead_days: 10.0,
-        ..decision(2, None)
+    let on = |coldest: [f64; 5]| {
+        let told = coldest.iter().enumerate();
+        let decisions = told.map(|(i, c)| decision(7 * i as u64, Some([*c, 20.0]))).collect();
+        of(&site, days(30), decisions, Vec::new())
     };
-    let out = of(&site, season, vec![shut], Vec::new());
-    assert_eq!(out.calendar[0].book_by, Some(date("2026-07-24")));
-    let of_high: Vec<_> = out.gates.iter().filter(|g| g.outlet == 0).collect();
-    assert_eq!(of_high.len(), 2);
-    assert_eq!((of_high[0].first_day, of_high[0].last_day), (Some(begin()), Some(date("2026-08-02"))));
-    assert_eq!(of_high[0].reason.as_ref().unwrap().0, "min_submergence");
-    assert_eq!(of_high[0].book_by, out.calendar[0].book_by, "ten days before it is moved");
-    assert_eq!((of_high[1].first_day, of_high[1].last_day), (Some(date("2026-08-05")), None));
-    assert_eq!(of_high[1].reason.as_ref().unwrap().0, "min_submergence", "why not before");
-    assert_eq!(out.gates.iter().filter(|g| g.outlet == 1).count(), 1);
-    // one that is out all season has no day, and says why
-    let outage = Outage { outlet: 2, from: begin(), to: None, reason: "hoist".into() };
-    let out = of(&site, days(3), Vec::new(), vec![outage]);
-    let low = out.gates.iter().find(|g| g.outlet == 2).unwrap();
-    assert_eq!((low.first_day, low.reason.as_ref().unwrap().0), (None, "outage"));
-    assert!(low.reason.as_ref().unwrap().1.contains("hoist"));
-}
-
-#[test]
-fn scenario_what_moves_is_told_with_the_day_its_crew_must_know() {
-    let site = checked(SITE);
-    let moved = |outlet: usize, to_m3s: f64| Move { outlet, from: 1.0, to: 1.0, from_m3s: 5.0, to_m3s };
-    let change = Decision {
-        moves: 2,
-        moved: vec![moved(1, 0.0), moved(2, 20.0)],
-        crew_hours: 3.0,
-        lead_days: 2.5,
-        ..decision(7, None)
-    };
-    let out = of(&site, days(10), vec![decision(0, None), change], Vec::new());
-    assert_eq!((out.moves, out.calendar.len()), (2, 1), "the first decision leaves everything as it is");
-    let on = &out.calendar[0];
-    assert_eq!((on.date, on.crew_hours, on.moved.len()), (date("2026-08-08"), 3.0, 2));
-    assert_eq!(on.book_by, Some(date("2026-08-05")), "a part of a day counts as one");
+    // 12 C at most until 15 August, 10 C from the next decision on
+    let near = on([8.0, 11.5, 9.0, 9.75, 9.5]);
+    assert_eq!(
+        (near.exhausted, near.nearest),
+        (Exhausted::NotBy(date("2026-08-30")), Some((0.25, date("2026-08-22"))))
+    );
+    // a hair above is no more than can be told, and shown as nothing
+    let hair = on([8.0, 8.0, 8.0, 10.04, 8.0]);
+    assert!(hair.spells.is_empty() && hair.reached[3].by_c() == Some(0.0), "{:?}", hair.spells);
+    assert!(hair.nearest.unwrap().0 < 0.0);
+    let above = on([8.0, 8.0, 8.0, 10.06, 8.0]);
+    assert_eq!(
+        (above.exhausted.on(), above.nearest.unwrap().1),
+        (Some(date("2026-08-22")), date("2026-08-22"))
+    );
+    assert_abs_diff_eq!(above.reached[3].by_c().unwrap(), 0.06, epsilon = 1e-9);
+    assert_eq!(of(&site, days(3), Vec::new(), Vec::new()).nearest, None);
 }
 
 #[test]

@@ -239,6 +239,8 @@ fn decision(site: &Site, outcome: &Outcome, of: &Decision) -> DecisionJson {
     let moves = outcome.calendar.iter().find(|m| m.date == of.date);
     let reached = outcome.reached.iter().find(|r| r.date == of.date);
     let asked = reached.map(crate::season::Reached::range_c);
+    let because = reached.and_then(|on| on.because.as_deref()).map(said);
+    let is_forced = matches!(of.why, Why::Forced(_));
     DecisionJson {
         date: of.date.to_string(),
         why: match of.why {
@@ -249,11 +251,8 @@ fn decision(site: &Site, outcome: &Outcome, of: &Decision) -> DecisionJson {
             Why::OutageOver(_) => "outage_over",
             Why::Crew(_) => "crew",
         },
-        limit: match of.why {
-            Why::Forced(check) => Some(said(&check.words(site))),
-            _ => None,
-        },
-        because: reached.and_then(|on| on.because.clone()),
+        limit: because.clone().filter(|_| is_forced),
+        because: because.filter(|_| !is_forced),
         attainable_c: of.attainable_c,
         asked_c: asked.map_or([None, None], <[Option<f64>; 2]>::from),
         moves: of.moves,
