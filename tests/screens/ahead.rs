@@ -97,6 +97,7 @@ fn invented(question: SeasonQuestion) -> Ahead {
         decides: begins,
         decide_days: 7,
         order: gatemix::rank::Criterion::USUAL.to_vec(),
+        every_case: false,
         notes: Vec::new(),
         fingerprint: context.fingerprint.clone(),
     };
