@@ -79,6 +79,7 @@ fn on_terminal(asked: Asked) -> io::Result<()> {
         aside: worker(&send),
         down: worker(&send),
         ahead: worker(&send),
+        needed: worker(&send),
         errands: {
             let send = send.clone();
             Errands::start(move |event| _ = send.send(Arrived::Event(event)))
@@ -166,6 +167,7 @@ struct Outside {
     aside: Worker,
     down: Worker,
     ahead: Worker,
+    needed: Worker,
     errands: Errands,
     kept: Kept,
     watched: Arc<Mutex<Option<Seen>>>,
@@ -205,6 +207,7 @@ impl Outside {
             Lane::Aside => &self.aside,
             Lane::Down => &self.down,
             Lane::Ahead => &self.ahead,
+            Lane::Needed => &self.needed,
         }
     }
 

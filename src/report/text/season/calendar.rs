@@ -71,15 +71,14 @@ pub fn moves(context: &Context, run: &SeasonRun, system: System) -> Vec<String> 
         outcome.crew_hours
     )];
     out.extend(outcome.calendar.iter().map(|on| {
-        let forced =
-            on.forced.as_ref().map(|(_, words)| format!("forced: {}", harmless(&in_system(words, system))));
-        let because = || on.because.as_ref().map(|words| harmless(words));
+        let forced = on.forced.as_ref().map(|(_, words)| harmless(&in_system(words, system)));
         let by = on.book_by.map_or_else(String::new, |by| format!("; {}", book(context, by)));
         let decision = run.run.decisions.iter().find(|d| d.date == on.date);
         let past =
             decision.and_then(|d| past(site, d, system)).map_or_else(String::new, |p| format!("; {p}"));
-        let due = || decision.map_or("", due).to_owned();
-        let why = forced.or_else(because).unwrap_or_else(due);
+        let called = || on.because.as_deref().map(harmless);
+        let why = forced.map(|limit| format!("forced: {limit}")).or_else(called);
+        let why = why.unwrap_or_else(|| decision.map_or("", due).to_owned());
         let makes = changed(run, on.date, system).map_or_else(String::new, |words| format!("; {words}"));
         format!("{}  {}; {why}{makes}{by}{past}", on.date, moved_words(site, &on.moved, system))
     }));
@@ -93,8 +92,8 @@ pub fn moves(context: &Context, run: &SeasonRun, system: System) -> Vec<String> 
 fn due(of: &Decision) -> &'static str {
     match of.why {
         Why::Begin => "the first decision",
-        Why::Due => "due",
-        _ => "",
+        Why::Forced(_) => "forced",
+        Why::Due | Why::Rule { .. } | Why::OutageOver(_) | Why::Crew(_) => "due",
     }
 }
 
