@@ -86,7 +86,7 @@ pub(super) enum Command {
             value_name = "FROM,TO,TEST",
             num_args = 0..=1,
             default_missing_value = "",
-            conflicts_with_all = ["case", "strategy", "every", "order", "csv", "strict"]
+            conflicts_with_all = ["case", "every_case", "strategy", "every", "order", "csv", "strict"]
         )]
         learn: Option<String>,
         /// How much cold water must be left at the end of a date for no later day outside the hard targets by their
@@ -261,6 +261,9 @@ pub(super) struct Ahead {
     /// Case of weather and inflow, by its name or year; without it the middle one.
     #[arg(long, value_name = "NAME")]
     case: Option<String>,
+    /// The other plans in every case beside it, not only in the one spoken of.
+    #[arg(long)]
+    every_case: bool,
     /// How gates are chosen: hold, best or thrift; without it as the site file says.
     #[arg(long, value_name = "NAME")]
     strategy: Option<String>,
@@ -285,6 +288,7 @@ impl Ahead {
         SeasonAsked {
             plan: self.plan.clone(),
             case: self.case.clone(),
+            every_case: self.every_case,
             strategy: self.strategy.clone(),
             schedule: self.schedule.clone(),
             every: self.every.clone(),

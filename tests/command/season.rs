@@ -133,6 +133,11 @@ fn scenario_other_cases_plans_and_strategies_stand_beside_it() {
             ["steady", "middling", "hold"]
         ]
     );
+    // every plan in every case where that is asked, each as it is by itself
+    let crossed = season(&folder, &["--every-case"]);
+    let beside: Vec<[&str; 3]> = list(&crossed["runs"]).iter().map(name_of).collect();
+    assert_eq!(beside[3..5], [["early", "warm", "best"], ["early", "cool", "best"]]);
+    assert_eq!((beside.len(), &crossed["days"]), (6, &answer["days"]));
     // the warm case takes in more heat than the cool one
     let last_c = |case: &str| {
         let run = named(&answer["runs"], "case", case);

@@ -142,6 +142,7 @@ fn invented(question: SeasonQuestion) -> Ahead {
         decide_days: asked.every.as_deref().map_or(7, |days| days.parse().unwrap()),
         order: Criterion::USUAL.to_vec(),
         schedules: context.folder.schedules(),
+        every_case: false,
         notes: Vec::new(),
         fingerprint: context.fingerprint.clone(),
     };

@@ -21,6 +21,8 @@ pub struct SeasonAsked {
     pub plan: Option<String>,
     /// Case, by name; the middle one when absent.
     pub case: Option<String>,
+    /// Whether the other plans are run in every case, not only in the one spoken of.
+    pub every_case: bool,
     /// Strategy, by name; the site's own when absent.
     pub strategy: Option<String>,
     /// File of a gate schedule, instead of a strategy.
@@ -66,6 +68,8 @@ pub(super) struct Understood {
     pub(super) case: Case,
     /// Every case.
     pub(super) cases: Vec<Case>,
+    /// Whether the other plans are run in each of them.
+    pub(super) every_case: bool,
     /// How gates are chosen.
     pub(super) choosing: Choosing,
     /// Days between decisions.
@@ -108,6 +112,7 @@ pub(super) fn understood(context: &Context, asked: &SeasonAsked) -> Result<Under
         over: passed,
         case,
         cases,
+        every_case: asked.every_case,
         choosing,
         decide_days,
         order: order(asked.order.as_deref())?,

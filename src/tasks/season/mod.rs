@@ -63,9 +63,11 @@ pub enum Seen {
 pub struct SeasonAnswer {
     /// The one spoken of.
     pub main: SeasonRun,
-    /// The others: the same plan in the other cases, then the other plans in the same case, then the other strategies
-    /// with the same plan in the same case.
+    /// The others: the same plan in the other cases, then the other plans in the same case (and each in the other cases
+    /// where that was asked), then the other strategies with the same plan in the same case.
     pub others: Vec<SeasonRun>,
+    /// Whether the other plans were run in every case.
+    pub every_case: bool,
     /// The first day.
     pub begins: NaiveDate,
     /// The first day on which gates may be moved: that of the cast where nobody knows what is set now.
@@ -136,6 +138,7 @@ pub fn season(
     Ok(SeasonAnswer {
         main,
         others,
+        every_case: understood.every_case,
         begins: understood.begins,
         decides: if now.is_some() { understood.decides } else { understood.begins },
         decide_days: understood.decide_days,

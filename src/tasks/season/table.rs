@@ -66,8 +66,8 @@ impl Table<'_> {
         Ok(main)
     }
 
-    /// The same plan in the other cases, the other plans in the same case, the other strategies; a case without air
-    /// for all the days is left out with a flag.
+    /// The same plan in the other cases, the other plans in the same case (in every case where that is asked), the other
+    /// strategies; a case without air for all the days is left out with a flag.
     pub(super) fn others(
         &self,
         main: &SeasonRun,
@@ -87,6 +87,9 @@ impl Table<'_> {
         }
         for plan in &of.other_plans {
             put(plan, &of.case, again.clone());
+            for case in of.cases.iter().filter(|case| of.every_case && !case.is(&of.case)) {
+                put(plan, case, again.clone());
+            }
         }
         for strategy in [Strategy::Hold, Strategy::Best] {
             let known = matches!(of.choosing, Choosing::By(main) if main == strategy);
@@ -102,8 +105,9 @@ impl Table<'_> {
     fn main_share(&self) -> f64 {
         let of = self.understood;
         let main = if matches!(of.choosing, Choosing::By(Strategy::Thrift)) { SOLVED } else { 1.0 };
+        let each = if of.every_case { of.cases.len() } else { 1 };
         // the other cases and plans, and the other one or two strategies
-        main / (main + (of.cases.len() + of.other_plans.len() + 1) as f64)
+        main / (main + (of.cases.len() + each * of.other_plans.len() + 1) as f64)
     }
 
     fn run(&self, (plan, skies, choosing): &Job, progress: Progress) -> Result<SeasonRun, Failure> {

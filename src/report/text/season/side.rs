@@ -145,9 +145,14 @@ pub(super) fn table(answer: &SeasonAnswer, system: System) -> String {
 /// Which seasons stand beside the one spoken of.
 fn combined(answer: &SeasonAnswer) -> String {
     let of = &answer.main.run;
+    let (plans, others) = if answer.every_case {
+        ("every case", "")
+    } else {
+        ("this case", ", --every-case for the other plans in every case")
+    };
     format!(
-        "run beside plan {}, case {}: this plan in the other cases, the other plans in this case, the other strategies \
-         with this plan in this case; --plan, --case and --strategy ask for any other",
+        "run beside plan {}, case {}: this plan in the other cases, the other plans in {plans}, the other strategies \
+         with this plan in this case; --plan, --case and --strategy ask for another{others}",
         harmless(&of.plan),
         harmless(&of.case)
     )
