@@ -18,6 +18,9 @@ use super::going::{Going, Morning, NOTHING_M3S};
 use super::set::{Flowing, flowing};
 use super::strategy::{Wants, changes_on, wants};
 
+/// What chooses among the mixes of a day: one, or every one that is worth following.
+type Chooses<'a> = &'a dyn Fn(&Choice) -> Result<Option<Vec<Chosen>>, NoMix>;
+
 impl Going<'_> {
     /// What is asked, as it would flow on a day at a site, and the first limit it breaks. `None` where it gives no water.
     pub(super) fn flows(
@@ -148,7 +151,7 @@ impl Going<'_> {
         morning: &Morning,
         why: Why,
         aim: f64,
-        choose: &dyn Fn(&Choice) -> Result<Option<Vec<Chosen>>, NoMix>,
+        choose: Chooses,
         progress: Progress,
     ) -> Result<Option<Vec<Option<Decision>>>, NoMix> {
         let date = morning.date();
@@ -161,7 +164,9 @@ impl Going<'_> {
             return self.on(&self.site, &[], morning, aim, choose).map(all);
         }
         let mut bound = self.site_today().clone();
-        waiting.iter().for_each(|&outlet| stays(&mut bound, outlet, now, date));
+        for &outlet in &waiting {
+            stays(&mut bound, outlet, now, date);
+        }
         match self.on(&bound, &waiting, morning, aim, choose) {
             Err(NoMix::Allowed(..)) => {}
             found if waiting.is_empty() => return found.map(all),

@@ -91,7 +91,8 @@ fn lives_of(site: &Site, run: &Run, outlet: usize) -> Vec<GateLife> {
         let within = |date: NaiveDate| {
             life.first_day.is_some_and(|first| first <= date) && life.last_day.is_none_or(|last| date <= last)
         };
-        life.fully = Fully::of(fully.iter().filter(|day| within(day.0)));
+        let days: Vec<(NaiveDate, bool)> = fully.iter().copied().filter(|day| within(day.0)).collect();
+        life.fully = Fully::of(&days);
     }
     out
 }

@@ -97,12 +97,12 @@ pub enum Fully {
 
 impl Fully {
     /// Of the days of a stretch, each with whether it can.
-    pub(super) fn of<'a>(days: impl Iterator<Item = &'a (NaiveDate, bool)> + Clone) -> Self {
-        let mut can = days.clone().filter(|day| day.1).map(|day| day.0);
+    pub(super) fn of(days: &[(NaiveDate, bool)]) -> Self {
+        let mut can = days.iter().filter(|day| day.1).map(|day| day.0);
         match can.next() {
             None => Self::Never,
-            Some(_) if days.clone().all(|day| day.1) => Self::Always,
-            Some(first) => Self::Within(first, can.last().unwrap_or(first)),
+            Some(_) if days.iter().all(|day| day.1) => Self::Always,
+            Some(first) => Self::Within(first, can.next_back().unwrap_or(first)),
         }
     }
 }

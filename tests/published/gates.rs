@@ -21,7 +21,9 @@ fn scenario_a_gate_half_open_lasts_longer() {
     assert_eq!((high.first_day, high.last_day), (Some(begin()), Some(date("2026-08-05"))));
     assert_eq!(high.fully, Fully::Within(begin(), date("2026-08-03")));
     assert!(gates.iter().all(|g| g.outlet == 0 || g.fully == Fully::Always));
-    season.iter_mut().for_each(|day| day.pool_m = 48.5);
+    for day in &mut season {
+        day.pool_m = 48.5;
+    }
     let gates = lives(season);
     let high = gates.iter().find(|g| g.outlet == 0).unwrap();
     assert_eq!(

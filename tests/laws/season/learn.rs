@@ -48,9 +48,7 @@ fn days() -> Vec<Past> {
 }
 
 fn at(day: NaiveDate) -> chrono::DateTime<chrono::FixedOffset> {
-    (day.and_time(chrono::NaiveTime::MIN) + chrono::TimeDelta::seconds(HOUR_S as i64))
-        .and_utc()
-        .fixed_offset()
+    (day.and_time(chrono::NaiveTime::MIN) + chrono::TimeDelta::minutes(9 * 60 + 20)).and_utc().fixed_offset()
 }
 
 fn warm(site: &Site) -> Layers {

@@ -16,7 +16,7 @@ fn brute(tiny: &Tiny) -> Score {
     let skies = tiny.skies(0.0);
     // decided in its turn, and on the day the rule changes
     let on: BTreeSet<u32> = (0..of.days).step_by(of.every as usize).chain([of.days / 2]).collect();
-    let ways = of.gates.pow(on.len() as u32);
+    let ways = on.iter().fold(1, |ways, _| ways * of.gates);
     let mut best: Option<Score> = None;
     for way in 0..ways {
         let gate = |k: u32| way / of.gates.pow(k) % of.gates;
