@@ -104,12 +104,12 @@ fn scenario_cold_water_runs_out_while_the_deep_gate_is_out() {
     assert_eq!(back["exhausted_until"], "2025-08-25");
     let text = in_words(&folder, &[]);
     assert!(text.contains(&format!("from {on} on even the coldest mix allowed is too warm")), "{text}");
-    assert!(text.contains("from 2025-08-25 on one is cold enough again"), "{text}");
+    assert!(text.contains("from 08-25 on one is cold enough again"), "{text}");
     assert!(text.contains("; then outage until 2025-08-20, hoist"), "{text}");
     let gone = season(&folder, &["--plan", "gone"]);
     assert_eq!((&gone["exhausted_on"], &gone["exhausted_until"]), (&back["exhausted_on"], &Value::Null));
     let text = in_words(&folder, &["--plan", "gone"]);
-    assert!(text.contains("to 2025-08-25, the last day of decision on which a rule asks"), "{text}");
+    assert!(text.contains(", the last day of decision on which a rule asks"), "{text}");
     assert!(text.contains("it runs out in 3 of 3 cases: on 2025-08-10 (cool), 2025-08-11 ("), "{text}");
 }
 
