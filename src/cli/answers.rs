@@ -110,6 +110,18 @@ pub(super) fn answer(cli: &Cli, clock: DateTime<Utc>, progress: Progress) -> Res
             };
             (shown, End::Answered)
         }
+        Some(Command::Season { common, asked, left: Some(date), .. }) => {
+            let context = tasks::open(&common.asked(), clock)?;
+            let date = Some(date.as_str()).filter(|date| !date.is_empty());
+            let answer = tasks::season::needed(&context, &asked.asked(), date, &|done| progress.tell(done))?;
+            drop(progress);
+            let shown = if common.json {
+                json::needed(&context, &answer)
+            } else {
+                common.color.of(&text::needed(&context, &answer))
+            };
+            (shown, End::Answered)
+        }
         Some(Command::Season { common, asked, csv, strict, .. }) => {
             let context = tasks::open(&common.asked(), clock)?;
             let answer = tasks::season::season(&context, &asked.asked(), &|done| progress.tell(done))?;

@@ -89,6 +89,16 @@ pub(super) enum Command {
             conflicts_with_all = ["case", "strategy", "every", "order", "csv", "strict"]
         )]
         learn: Option<String>,
+        /// How much cold water must be left at the end of a date for no later day outside the hard targets by their
+        /// temperature, in each case; without the date on the first of a month.
+        #[arg(
+            long,
+            value_name = "DATE",
+            num_args = 0..=1,
+            default_missing_value = "",
+            conflicts_with_all = ["learn", "csv", "strict"]
+        )]
+        left: Option<String>,
         /// As a table for a spreadsheet, a row a day, in the units shown.
         #[arg(long, conflicts_with = "json")]
         csv: bool,

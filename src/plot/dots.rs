@@ -50,6 +50,8 @@ pub enum Stroke {
     Thin,
     /// Two dots wide where a cell has them.
     Heavy,
+    /// Two dots wide and high where a cell has more than two.
+    Broad,
     /// Every second dot.
     Dotted,
 }
@@ -117,8 +119,13 @@ impl Dots {
                 }
                 self.set(curve, dot);
                 if stroke == Stroke::Heavy && self.grain.dots().0 > 1 {
-                    let beside = if dot.0 + 1 < across { dot.0 + 1 } else { dot.0.saturating_sub(1) };
-                    self.set(curve, (beside, dot.1));
+                    self.set(curve, (inside(dot.0, across), dot.1));
+                }
+                if stroke == Stroke::Broad && self.grain.dots().1 > 2 {
+                    let (beside, below) = (inside(dot.0, across), inside(dot.1, down));
+                    for dot in [(beside, dot.1), (dot.0, below), (beside, below)] {
+                        self.set(curve, dot);
+                    }
                 }
             }
         }
@@ -159,6 +166,11 @@ impl Dots {
             cell.curve = curve;
         }
     }
+}
+
+/// The dot after one of so many; the one before it where that is the last.
+fn inside(dot: usize, dots: usize) -> usize {
+    if dot + 1 < dots { dot + 1 } else { dot.saturating_sub(1) }
 }
 
 /// The part of a line inside the unit square, after Liang and Barsky, "A new concept and method for line clipping",
@@ -205,6 +217,7 @@ mod tests {
         assert_eq!(drawn(Grain::Block, Stroke::Thin, &line), ["▀▄  ", "  ▀▄"]);
         assert_eq!(drawn(Grain::Ascii, Stroke::Thin, &line), ["**  ", "  **"]);
         assert_eq!(drawn(Grain::Braille, Stroke::Heavy, &[(0.0, 1.0), (0.0, 0.0)]), ["⣿   ", "⣿   "]);
+        assert_eq!(drawn(Grain::Braille, Stroke::Broad, &[(0.0, 0.7), (1.0, 0.7)]), ["⣤⣤⣤⣤", "    "]);
         assert_eq!(drawn(Grain::Braille, Stroke::Dotted, &[(0.0, 1.0), (0.0, 0.0)]), ["⠅   ", "⠅   "]);
     }
 

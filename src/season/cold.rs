@@ -1,4 +1,5 @@
-//! The cold water of a season by date: all of it, what the outlets usable on that date can draw, and the reserves.
+//! The cold water of a season by date: all of it, what the outlets usable on that date can draw, the reserves; and a pool
+//! with more or less of it.
 //!
 //! Methods: `docs/methods.md`, section 8.
 
@@ -9,7 +10,9 @@ use crate::site::{Reserve, Site};
 use crate::target::YearDay;
 
 use super::gates::usable;
+use super::layers::{Layer, Layers};
 use super::outcome::{ColdDay, ColdWater, Exhausted, Left};
+use super::reshape::cut;
 use super::run::SeasonDay;
 use super::tally::TargetTally;
 
@@ -73,4 +76,46 @@ pub(super) fn under(reserve: &Reserve, cold: &ColdWater) -> Exhausted {
     }
     kept.find(|day| day.usable_m3.unwrap_or(0.0) < reserve.volume_m3)
         .map_or(Exhausted::NotBy(last.date), |day| Exhausted::On(day.date))
+}
+
+impl Layers {
+    /// Water colder than a threshold (C), and the rest, m3.
+    pub(super) fn parted_m3(&self, threshold_c: f64) -> [f64; 2] {
+        let of = |colder: bool| {
+            let those = self.layers.iter().filter(|l| (l.temperature_c < threshold_c) == colder);
+            those.map(|l| l.volume_m3).sum()
+        };
+        [of(true), of(false)]
+    }
+
+    /// The same pool with so much of its water (m3) colder than a threshold (C): every colder layer is given one factor,
+    /// every other the one that keeps the volume of all; what grows too thick is cut. `None` where no water is colder, or
+    /// all of it is.
+    ///
+    /// # Units
+    /// m3, C.
+    ///
+    /// # References
+    /// The heave of section 9 by volume instead of height, its knee at the threshold: ours (choice).
+    #[must_use]
+    pub fn with_cold(&self, site: &Site, threshold_c: f64, cold_m3: f64) -> Option<Self> {
+        let [colder, warmer] = self.parted_m3(threshold_c);
+        if colder <= 0.0 || warmer <= 0.0 {
+            return None;
+        }
+        let cold_m3 = cold_m3.clamp(0.0, colder + warmer);
+        let factor = |layer: &Layer| {
+            if layer.temperature_c < threshold_c {
+                cold_m3 / colder
+            } else {
+                (colder - cold_m3 + warmer) / warmer
+            }
+        };
+        let mut out = self.clone();
+        out.layers.iter_mut().for_each(|layer| layer.volume_m3 *= factor(layer));
+        out.layers.retain(|layer| layer.volume_m3 > 0.0);
+        let edges = out.edges_m(&site.pool);
+        cut(&mut out, site, edges);
+        Some(out)
+    }
 }

@@ -7,7 +7,7 @@ use std::sync::Arc;
 use chrono::{NaiveDate, NaiveTime};
 
 use crate::mix::limits::Check;
-use crate::mix::{Asked, Blend, Setting, groups, release};
+use crate::mix::{Asked, Blend, groups, release};
 use crate::profile::{Column, Profile};
 use crate::rank::Progress;
 use crate::river::{self, Figures};
@@ -22,7 +22,7 @@ use super::plan::PlanDay;
 use super::run::{Ended, Run, SeasonDay, Setup};
 use super::set::Flowing;
 use super::step::day;
-use super::strategy::{name, set_by};
+use super::strategy::set_by;
 
 /// A release this near to none is none, m3/s (choice: round-off of the volume of a large pool).
 pub(super) const NOTHING_M3S: f64 = 1e-6;
@@ -85,7 +85,7 @@ impl<'a> Going<'a> {
         let run = Run {
             plan: setup.plan.name.clone(),
             case: setup.skies.case.name.clone(),
-            strategy: name(&setup.choosing).to_owned(),
+            strategy: setup.choosing.name(),
             start: layers.clone(),
             days: Vec::new(),
             decisions: Vec::new(),
@@ -120,7 +120,14 @@ impl<'a> Going<'a> {
 
     /// Goes through the days that are left. `None` where the caller stops it.
     pub(super) fn finished(mut self, progress: Progress) -> Option<Run> {
-        while self.is_on() {
+        self.through(NaiveDate::MAX, progress)?;
+        Some(self.run)
+    }
+
+    /// Goes through the days up to a date. `None` where the caller stops it.
+    pub(super) fn through(&mut self, last: NaiveDate, progress: Progress) -> Option<()> {
+        let is_due = |next: &PlanDay| next.date <= last;
+        while self.is_on() && self.ahead.get(self.run.days.len()).is_some_and(is_due) {
             let done = self.share_done();
             if progress(done).is_break() {
                 return None;
@@ -128,10 +135,16 @@ impl<'a> Going<'a> {
             // whoever looks on is not told how far a single decision is
             self.next_day(&|_| progress(done))?;
         }
-        Some(self.run)
+        Some(())
     }
 
-    /// Goes through days that have passed: by the schedule, else by what is set now, whatever limit stood against it.
+    /// The same season with other water in the pool.
+    pub(super) fn with(&self, layers: Layers) -> Self {
+        Self { layers, ..self.clone() }
+    }
+
+    /// Goes through days that have passed: by the schedule, its flows as they are told, also those of a well; else by what
+    /// is set now. Whatever limit stood against it.
     pub(super) fn through_what_was(mut self, progress: Progress) -> Option<Run> {
         while self.is_on() {
             if progress(self.share_done()).is_break() {
@@ -139,7 +152,7 @@ impl<'a> Going<'a> {
             }
             let date = self.ahead.get(self.run.days.len()).map(|plan| plan.date);
             if let Some(gates) = date.and_then(|date| set_by(self.setup, date)) {
-                self.asked = Some(Asked::of(&self.site, &Setting::of(gates.clone())));
+                self.asked = Some(Asked { direct: gates.clone(), ..Asked::default() });
             }
             if let Some(morning) = self.morning() {
                 self.pass(morning, None);

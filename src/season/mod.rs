@@ -22,6 +22,7 @@ mod inflow;
 mod layers;
 mod learn;
 mod mixing;
+mod needed;
 mod outcome;
 mod outflow;
 mod oxygen;
@@ -47,10 +48,11 @@ pub use diffusion::{diffuse, diffusivity_m2_s};
 pub use inflow::{Neutral, neutral};
 pub use layers::{Layer, Layers};
 pub use learn::{
-    Apart, DIFFUSION, Fitted, LEAST_DAYS, LEAST_SAMPLES, LIGHT_PER_M, Learned, Past, WATER_DEMAND_MG_L_DAY,
-    WIND, learn, past,
+    AS_NEAR, Apart, DIFFUSION, Fitted, LEAST_DAYS, LEAST_SAMPLES, LIGHT_PER_M, Learned, Past,
+    WATER_DEMAND_MG_L_DAY, WIND, learn, past,
 };
 pub use mixing::{friction_velocity_m_s, mixing_energy_j, wind_work_j_m2};
+pub use needed::{Amount, Found, Needed, Stretch, needed};
 pub use outcome::{
     Asks, ColdDay, ColdWater, Exhausted, Fully, GateLife, GateMoves, Left, Outcome, Reached, Spell,
     StageDate, StageFall, Stopping, Turned, outcome,
@@ -60,5 +62,5 @@ pub use plan::{Plan, PlanDay, RawPlan, RawPlanRow, Schedule};
 pub use price::{Change, Difference, PRICE_MEMBERS, Price, Pricing, prices};
 pub use run::{Choosing, Ended, Run, SeasonDay, Setup, passed, run};
 pub use skies::{Skies, Sky};
-pub use step::{Forcing, Inflow, MOST_OPEN, Stepped, Unbalanced, day};
+pub use step::{Forcing, Inflow, MOST_OPEN, Stepped, Unbalanced, day, part_of_day};
 pub use tally::{Score, TargetTally, tallies};

@@ -100,6 +100,13 @@ pub struct Schedule {
     pub changes: Vec<(NaiveDate, Vec<Gate>)>,
 }
 
+impl Schedule {
+    /// What one of a file is called where strategies are named.
+    pub fn called(file: &str) -> String {
+        format!("schedule {}", stem(file))
+    }
+}
+
 impl Plan {
     /// Checks a raw plan against its site. The list holds every refusal, flag and note; `None` when any refuses.
     pub fn check(raw: &RawPlan, site: &Site) -> (Option<Self>, Vec<Problem>) {

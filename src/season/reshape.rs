@@ -9,7 +9,7 @@ use super::layers::{Layer, Layers};
 /// Brings every layer between half and twice the wanted thickness: the thinnest first joins the neighbour nearer in
 /// density, then the thick are cut at half their height.
 pub(super) fn reshape(layers: &mut Layers, site: &Site) {
-    let (least_m, most_m) = (0.5 * layers.thickness_m, 2.0 * layers.thickness_m);
+    let least_m = 0.5 * layers.thickness_m;
     let mut edges = layers.edges_m(&site.pool);
     let water = &mut layers.layers;
     while water.len() > 1 {
@@ -23,6 +23,14 @@ pub(super) fn reshape(layers: &mut Layers, site: &Site) {
         water[lower] = water[lower].joined(&upper);
         edges.remove(lower + 1);
     }
+    cut(layers, site, edges);
+}
+
+/// Cuts layers, told with their edges (m), that are thicker than twice the wanted thickness at half their height, until
+/// none is.
+pub(super) fn cut(layers: &mut Layers, site: &Site, mut edges: Vec<f64>) {
+    let most_m = 2.0 * layers.thickness_m;
+    let water = &mut layers.layers;
     let mut below_m3 = site.pool.volume_m3(site.pool.bed_m);
     let mut i = 0;
     while i < water.len() {

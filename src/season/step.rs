@@ -83,6 +83,20 @@ pub fn day(
     forcing: &Forcing,
     levels: &dyn Fn(&Column, f64) -> Vec<Level>,
 ) -> Result<Stepped, Unbalanced> {
+    part_of_day(layers, site, forcing, DAY_S, levels)
+}
+
+/// Takes the pool through as much of a day, s, at the day's flows and under its mean air; all else as [`day`].
+///
+/// # Errors
+/// As [`day`].
+pub fn part_of_day(
+    layers: &mut Layers,
+    site: &Site,
+    forcing: &Forcing,
+    lasts_s: f64,
+    levels: &dyn Fn(&Column, f64) -> Vec<Level>,
+) -> Result<Stepped, Unbalanced> {
     let fails = |words: String| Unbalanced { date: forcing.date, words };
     let mut now = layers.clone();
     let no_water = || fails("the pool holds no water".into());
@@ -93,7 +107,7 @@ pub fn day(
     let mut balance = Balance::default();
     balance.water_m3.before = now.volume_m3();
     balance.heat_j.before = now.heat_j();
-    let (mut left_s, mut steps, mut overturned) = (DAY_S, 0, false);
+    let (mut left_s, mut steps, mut overturned) = (lasts_s, 0, false);
     while left_s > 0.0 {
         let edges = now.edges_m(&site.pool);
         if steps > 0 && !levels.is_empty() {

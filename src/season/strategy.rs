@@ -22,13 +22,15 @@ pub(super) enum Wants {
     These(Asked),
 }
 
-/// The name of what chooses the gates.
-pub(super) fn name(choosing: &Choosing) -> &'static str {
-    match choosing {
-        Choosing::By(strategy) => strategy.name(),
-        Choosing::Schedule(_) => "schedule",
-        Choosing::Aims(_) | Choosing::Found(_) => Strategy::Thrift.name(),
-        Choosing::Held(..) => "held",
+impl Choosing {
+    /// Its name.
+    pub fn name(&self) -> String {
+        match self {
+            Self::By(strategy) => strategy.name().to_owned(),
+            Self::Schedule(of) => Schedule::called(&of.file),
+            Self::Aims(_) | Self::Found(_) => Strategy::Thrift.name().to_owned(),
+            Self::Held(..) => "held".to_owned(),
+        }
     }
 }
 

@@ -78,11 +78,8 @@ impl Score {
     /// The score of a season.
     pub fn of(setup: &Setup, run: &Run) -> Self {
         let site = &setup.skies.site;
-        let planned = setup.plan.days.last().map_or(0, |last| (last.date - setup.begins).num_days() + 1);
-        let lost = planned.saturating_sub(i64::try_from(run.days.len()).unwrap_or(i64::MAX)).max(0);
         let moves = run.decisions.iter().map(|d| d.moves).sum();
-        let lost = u32::try_from(lost).unwrap_or(u32::MAX);
-        Self { lost, moves, ..Self::of_days(site, &setup.skies.conditions, &run.days) }
+        Self { lost: lost(setup, run), moves, ..Self::of_days(site, &setup.skies.conditions, &run.days) }
     }
 
     /// The score of some days by themselves, moves left out. None of its figures falls as days are added: a day is
@@ -112,6 +109,13 @@ impl Score {
             .then(self.degree_days.total_cmp(&other.degree_days))
             .then(self.moves.cmp(&other.moves))
     }
+}
+
+/// Days of the plan that a season does not reach.
+pub(super) fn lost(setup: &Setup, run: &Run) -> u32 {
+    let planned = setup.plan.days.last().map_or(0, |last| (last.date - setup.begins).num_days() + 1);
+    let lost = planned.saturating_sub(i64::try_from(run.days.len()).unwrap_or(i64::MAX)).max(0);
+    u32::try_from(lost).unwrap_or(u32::MAX)
 }
 
 /// Whether a rule of a statistic is missed by degrees: not by days, and not by a sum over days.

@@ -86,6 +86,10 @@ pub enum Role {
     Outside,
     /// A band of the water in a picture of the season, the coldest 0.
     Band(usize),
+    /// A mark over such a band.
+    Mark,
+    /// What is within reach, behind curves.
+    Reach,
     /// Worth a second look.
     Warn,
     /// A field being typed.
@@ -113,6 +117,9 @@ const VERMILLION: Color = Color::Indexed(166);
 const BLUE: Color = Color::Indexed(32);
 const PURPLE: Color = Color::Indexed(175);
 const YELLOW: Color = Color::Indexed(227);
+const WHITE: Color = Color::Indexed(231);
+const DARK: Color = Color::Indexed(237);
+const LESS_DARK: Color = Color::Indexed(242);
 
 /// Colours of the bands, from cold to warm; what they tell is also told by the characters.
 const BANDS: [(Color, Color); 6] = [
@@ -122,6 +129,16 @@ const BANDS: [(Color, Color); 6] = [
     (YELLOW, Color::Yellow),
     (ORANGE, Color::Magenta),
     (VERMILLION, Color::Red),
+];
+
+/// The same, darker: behind their characters, so that a mark leaves a band to be seen (choice).
+const BEHIND: [Color; 6] = [
+    BLUE,
+    Color::Indexed(31),
+    Color::Indexed(29),
+    Color::Indexed(100),
+    Color::Indexed(136),
+    Color::Indexed(130),
 ];
 
 impl Look {
@@ -137,16 +154,29 @@ impl Look {
     pub fn style(self, role: Role) -> Style {
         let plain = Style::new();
         let shape = match role {
-            Role::Strong | Role::Tried | Role::Outside | Role::Key => plain.add_modifier(Modifier::BOLD),
+            Role::Strong | Role::Tried | Role::Outside | Role::Key | Role::Mark => {
+                plain.add_modifier(Modifier::BOLD)
+            }
             Role::Chosen | Role::Field => plain.add_modifier(Modifier::REVERSED),
             Role::Old => plain.add_modifier(Modifier::DIM),
             Role::Quiet if self.theme != Theme::Mono => plain.add_modifier(Modifier::DIM),
             _ => plain,
         };
         // reversed text keeps the terminal's own colours: two attributes in one cell are lost on some terminals
-        match self.colour(role) {
+        let shape = match self.colour(role) {
             Some(colour) if !matches!(role, Role::Chosen | Role::Field) => shape.fg(colour),
             _ => shape,
+        };
+        self.behind(role).map_or(shape, |colour| shape.bg(colour))
+    }
+
+    /// The colour behind a meaning. The 16 of the terminal are too few to lay one on the other, the range apart.
+    fn behind(self, role: Role) -> Option<Color> {
+        match (self.theme, role) {
+            (Theme::Palette | Theme::Auto, Role::Band(band)) => Some(BEHIND[band.min(BEHIND.len() - 1)]),
+            (Theme::Palette | Theme::Auto, Role::Reach) => Some(DARK),
+            (Theme::Ansi, Role::Reach) => Some(Color::DarkGray),
+            _ => None,
         }
     }
 
@@ -160,7 +190,16 @@ impl Look {
             Role::Now => (PURPLE, Color::Magenta),
             Role::Tried => (YELLOW, Color::Yellow),
             Role::Outside => (VERMILLION, Color::Red),
-            Role::Plain | Role::Quiet | Role::Strong | Role::Chosen | Role::Field | Role::Old => return None,
+            // over a band of the palette; the bands of the 16 have nothing behind them
+            Role::Mark if self.theme != Theme::Ansi => (WHITE, Color::Reset),
+            Role::Reach => (LESS_DARK, Color::Gray),
+            Role::Plain
+            | Role::Quiet
+            | Role::Strong
+            | Role::Chosen
+            | Role::Field
+            | Role::Old
+            | Role::Mark => return None,
         };
         match self.theme {
             Theme::Mono => None,

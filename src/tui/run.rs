@@ -79,6 +79,7 @@ fn on_terminal(asked: Asked) -> io::Result<()> {
         aside: worker(&send),
         down: worker(&send),
         ahead: worker(&send),
+        needed: worker(&send),
         errands: {
             let send = send.clone();
             Errands::start(move |event| _ = send.send(Arrived::Event(event)))
@@ -166,6 +167,7 @@ struct Outside {
     aside: Worker,
     down: Worker,
     ahead: Worker,
+    needed: Worker,
     errands: Errands,
     kept: Kept,
     watched: Arc<Mutex<Option<Seen>>>,
@@ -176,7 +178,7 @@ impl Outside {
     /// Does what is asked for; whether it is to leave.
     fn perform(&mut self, effect: Effect, taken: &mut Taken) -> io::Result<bool> {
         match effect {
-            Effect::Ask(generation, work) => self.worker(work.lane()).ask(generation, work),
+            Effect::Ask(generation, work) => self.worker(work.lane()).ask(generation, *work),
             Effect::Stop(lane, generation) => self.worker(lane).stop(generation),
             Effect::Watch(seen) => {
                 *self.watched.lock().unwrap_or_else(PoisonError::into_inner) = Some(seen);
@@ -205,6 +207,7 @@ impl Outside {
             Lane::Aside => &self.aside,
             Lane::Down => &self.down,
             Lane::Ahead => &self.ahead,
+            Lane::Needed => &self.needed,
         }
     }
 

@@ -8,20 +8,20 @@ use std::sync::mpsc::{Receiver, Sender, channel};
 use std::sync::{Arc, Mutex, PoisonError};
 use std::thread;
 
-use chrono::{DateTime, Utc};
+use chrono::{DateTime, NaiveDate, Utc};
 
 use crate::files::folder::{Stamps, stamps};
 use crate::problem::Problem;
 use crate::tasks::rank::{RankAnswer, RankAsked, Shown, rank};
 use crate::tasks::river::downstream;
-use crate::tasks::season::{SeasonAsked, prices, season};
+use crate::tasks::season::{SeasonAsked, needed, prices, season};
 use crate::tasks::{
     Asked, Cast, Changed, Context, Failure, Given, MixAnswer, PoolAnswer, Solved, casts, mix, mix_given,
     open, pool, preferred_c, solve,
 };
 use crate::units::System;
 
-use super::model::{Ahead, Downstream, Priced, SeasonQuestion, asked};
+use super::model::{Ahead, Downstream, Left, Priced, SeasonQuestion, asked};
 
 /// Who computes: what answers a key, or what takes longer.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -36,6 +36,8 @@ pub enum Lane {
     Down,
     /// The season, and the price of mixes by its end.
     Ahead,
+    /// The cold water needed on a date.
+    Needed,
 }
 
 /// What settings are computed on.
@@ -83,6 +85,8 @@ pub enum Work {
     },
     /// The season ahead, under what is changed.
     Season(SeasonQuestion),
+    /// The cold water needed on a date of the season.
+    Needed(SeasonQuestion, NaiveDate),
     /// What the mixes of a ranking cost by the end of the season.
     Prices {
         /// The files and changes of the ranking.
@@ -136,6 +140,8 @@ pub enum Done {
     Down(Result<Box<Downstream>, Failure>),
     /// The season.
     Ahead(Result<Box<Ahead>, Failure>),
+    /// The cold water needed.
+    Needed(Result<Box<Left>, Failure>),
     /// The price of mixes.
     Priced(Result<Box<Priced>, Failure>),
 }
@@ -149,6 +155,7 @@ impl Work {
             Self::Casts(..) => Lane::Aside,
             Self::River { .. } => Lane::Down,
             Self::Season(..) | Self::Prices { .. } => Lane::Ahead,
+            Self::Needed(..) => Lane::Needed,
         }
     }
 
@@ -186,6 +193,13 @@ impl Work {
                     Ok(Box::new(Ahead { question, context: Arc::new(context), answer }))
                 }))
             }
+            Self::Needed(question, date) => {
+                Done::Needed(question.base.changed(&question.changed).and_then(|context| {
+                    let date = date.to_string();
+                    let answer = needed(&context, &question.asked, Some(&date), progress)?;
+                    Ok(Box::new(Left { question, context: Arc::new(context), answer }))
+                }))
+            }
             Self::Prices { context, ranking, asked } => Done::Priced(
                 prices(&context, &ranking, &asked, progress)
                     .map(|prices| Box::new(Priced { context, asked, prices })),
@@ -202,6 +216,7 @@ impl Work {
             Self::Casts(..) => |failure| Done::Casts(Err(failure)),
             Self::River { .. } => |failure| Done::Down(Err(failure)),
             Self::Season(..) => |failure| Done::Ahead(Err(failure)),
+            Self::Needed(..) => |failure| Done::Needed(Err(failure)),
             Self::Prices { .. } => |failure| Done::Priced(Err(failure)),
         }
     }

@@ -1,7 +1,7 @@
 //! `season --learn`: what nobody measures, learned from casts and the days between.
 
 use std::fs;
-use std::path::Path;
+use std::path::{Path, PathBuf};
 
 use approx::assert_relative_eq;
 use gatemix::files::folder::Folder as Opened;
@@ -32,8 +32,7 @@ fn learn(folder: &Folder, more: &[&str]) -> crate::Run {
 #[test]
 fn scenario_the_third_site_is_learned_and_its_lines_are_read_back() {
     let dir = tempfile::tempdir().unwrap();
-    assert_eq!(run(&["demo", dir.path().to_str().unwrap()]).code, Some(0));
-    let folder = dir.path().join("tessel");
+    let folder = tessel(dir.path());
     let site = folder.join("site.yaml");
     let before = fs::read_to_string(&site).unwrap();
     let answer = run(&["season", folder.to_str().unwrap(), "--learn", "--json"]).json();
@@ -47,13 +46,26 @@ fn scenario_the_third_site_is_learned_and_its_lines_are_read_back() {
     for knob in list(&learned["knobs"]) {
         let [least, most] = [0, 1].map(|end| number(&knob["range"][end]));
         assert!((least..=most).contains(&number(&knob["after"])), "{knob}");
-        assert!(number(&knob["before"]) > 0.0 && knob["at_end"].is_boolean(), "{knob}");
+        assert!(number(&knob["before"]) > 0.0 && knob["told"] == true && knob["at_end"] == false, "{knob}");
+        let [low, high] = [0, 1].map(|end| number(&knob["as_near"][end]));
+        assert!(
+            least <= low && low <= number(&knob["after"]) && number(&knob["after"]) <= high && high <= most,
+            "{knob}"
+        );
     }
+    assert_eq!(learned["weather"], "the weather file");
     let off = |of: &str, when: &str, what: &str| number(&learned[of][when][what]);
-    assert!(off("fitted", "after", "temperature_c") < off("fitted", "before", "temperature_c"));
+    assert!(off("fitted", "after", "temperature_c") < 0.5 * off("fitted", "before", "temperature_c"));
+    assert!(off("tested", "after", "temperature_c") < 0.5 * off("tested", "before", "temperature_c"));
     for what in ["temperature_c", "oxygen_mg_l"] {
         assert!(off("tested", "after", what) <= off("tested", "before", what), "{what}");
     }
+    // the flows of the schedule are those that were, also of two gates of one well, which shares out otherwise by itself
+    let aside = dir.path().join("aside");
+    fs::rename(folder.join("schedules"), &aside).unwrap();
+    let as_now = run(&["season", folder.to_str().unwrap(), "--learn", "--json"]).json();
+    let as_now = number(&as_now["learned"]["tested"]["after"]["temperature_c"]);
+    assert!(off("tested", "after", "temperature_c") < 0.5 * as_now, "{as_now} without the schedule");
     // the lines in the place of what the file says of the same
     let lines: Vec<&str> = list(&learned["site_lines"]).iter().map(|l| l.as_str().unwrap()).collect();
     fs::write(&site, with(&before, "season:\n  secchi: 3.4", &lines.join("\n"))).unwrap();
@@ -65,12 +77,24 @@ fn scenario_the_third_site_is_learned_and_its_lines_are_read_back() {
     }
 }
 
+/// A site folder of the demonstration on disk, to be changed.
+fn tessel(dir: &Path) -> PathBuf {
+    assert_eq!(run(&["demo", dir.to_str().unwrap()]).code, Some(0));
+    dir.join("tessel")
+}
+
 #[test]
 fn scenario_a_knob_at_an_end_is_marked_and_casts_are_named() {
-    let text = run(&["season", "tessel", "--learn", "2026-04-14,2026-05-19.csv,2026-06-09"]);
+    let dir = tempfile::tempdir().unwrap();
+    let folder = tessel(dir.path());
+    // wind of so far above the water is weak at it, and too weak for what it did
+    let weather = fs::read_to_string(folder.join("weather.csv")).unwrap();
+    fs::write(folder.join("weather.csv"), with(&weather, "wind height: 10 m", "wind height: 60 m")).unwrap();
+    let text = run(&["season", folder.to_str().unwrap(), "--learn", "2026-04-14,2026-05-19.csv,2026-06-09"]);
     assert_eq!(text.code, Some(0), "{}", text.err);
     let row = text.out.lines().find(|line| line.contains("wind share, %")).unwrap();
-    assert!(row.contains("5.00 to 130.0") && row.ends_with("! at an end"), "{row}");
+    assert!(!text.out.contains("mean figures stand for it"), "{}", text.out);
+    assert!(row.ends_with("5.00 to 130.0") && row.starts_with("! "), "{row}");
     assert!(text.out.contains("tested on that of\n         2026-06-09"), "{}", text.out);
     assert!(text.out.lines().all(|line| line.chars().count() <= 80), "{}", text.out);
 }

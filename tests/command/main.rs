@@ -11,6 +11,7 @@ mod demo;
 mod escapes;
 mod exits;
 mod learn;
+mod left;
 mod limits;
 mod loggers;
 mod new;

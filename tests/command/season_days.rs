@@ -84,7 +84,7 @@ fn scenario_what_counts_first_can_be_said_and_a_nearer_season_beside_is_told() {
     assert!(text.contains("runs out reserve worst outside deg.d moves"), "{text}");
     assert!(text.contains("temperature oxygen least oxygen end pool"), "{text}");
     // what is released outside the range though a mix within it is allowed
-    let passed_over = "though within reach; oxygen comes first in the order";
+    let passed_over = "C: oxygen comes first";
     assert!(told(&arguments).contains(passed_over) && !text.contains(passed_over), "{text}");
     let words = run(&[&arguments[..], &["--order", "cold"]].concat());
     assert!(words.failed_with(2).contains("`cold` is no criterion"));

@@ -3,6 +3,7 @@
 pub(crate) mod ashlar;
 pub(crate) mod basin;
 pub(crate) mod column;
+pub(crate) mod heat;
 pub(crate) mod past;
 pub(crate) mod record;
 pub(crate) mod season;

@@ -21,8 +21,10 @@ pub(crate) struct Past {
     pub(crate) days: Vec<PastDay>,
 }
 
-/// A gate given less than this stays shut, m3/s.
-const SHUT_M3S: f64 = 0.05;
+/// A gate given less than two decimals show stays shut, m3/s.
+const SHUT_M3S: f64 = 0.005;
+/// Dissolved solids to specific conductance, mg/L for uS/cm.
+const SOLIDS: f64 = 0.65;
 /// Gates of the tower.
 const GATES: usize = 4;
 
@@ -31,12 +33,16 @@ impl Past {
     pub(crate) fn plan(&self, of: &str) -> (String, String) {
         let mut text =
             format!("# {of}: what has been, invented days of an invented place.\n# name: past spring\n");
-        text.push_str("date,release_m3s,inflow_m3s,inflow_temperature_C,inflow_oxygen_mg_l\n");
+        text.push_str(
+            "date,release_m3s,inflow_m3s,inflow_temperature_C,inflow_oxygen_mg_l,inflow_solids_mg_l\n",
+        );
         for day in &self.days {
             let release_m3s: f64 = day.gates.iter().map(|gate| gate.1).sum();
             let PastDay { day, inflow_m3s, inflow, .. } = day;
             let (c, oxygen) = (inflow.temperature_c, inflow.oxygen_mg_l);
-            writeln!(text, "{day},{release_m3s:.2},{inflow_m3s:.2},{c:.2},{oxygen:.2}").unwrap();
+            let solids_mg_l = SOLIDS * inflow.conductance_us_cm;
+            writeln!(text, "{day},{release_m3s:.2},{inflow_m3s:.2},{c:.2},{oxygen:.2},{solids_mg_l:.0}")
+                .unwrap();
         }
         ("plans/past-2026.csv".to_owned(), text)
     }

@@ -13,7 +13,6 @@
 )]
 
 pub(crate) mod believable;
-mod heat;
 mod operation;
 mod river;
 mod stations;
@@ -25,10 +24,11 @@ use serde_yaml::Value;
 
 use super::basin::Basin;
 use super::column::{Column, Nature, Water};
+use super::heat::{self, Hour};
 use super::sonde::{Cast, sound, times};
 use operation::{Inflow, operate, rule_curve_m};
 use river::{Point, Reach};
-use weather::{Hour, Weather};
+use weather::Weather;
 
 /// The column runs from here, mixed as pools are in November.
 const FIRST_DAY: (i32, u32, u32) = (2024, 11, 10);

@@ -1,12 +1,14 @@
 //! Tessel Dam on the Varr Water, both invented: two years of weather, inflow and operation, and the casts taken from
 //! the tower meanwhile; of the last spring also what came in and what was set.
 //!
-//! The pool is the column of the other sites with a clear upland pool's nature; the weather is harmonics with noise from
-//! a fixed seed. Every number is a choice for a supply dam at 46 degrees north and 350 m.
+//! The pool is the column of the other sites with a clear upland pool's nature; what drives it is harmonics with noise from
+//! a fixed seed, and the weather file the air that goes with it. Every number is a choice for a supply dam at 46 degrees north and 350 m.
+
+mod weather;
 
 use std::collections::BTreeMap;
 
-use chrono::{NaiveDate, NaiveDateTime};
+use chrono::{NaiveDate, NaiveDateTime, NaiveTime};
 use rand_pcg::Pcg32;
 use serde_yaml::Value;
 
@@ -16,6 +18,7 @@ use super::past::{Past, PastDay};
 use super::season::{bell, fading, through, yearly};
 use super::sonde::{Cast, sound, times};
 use super::water::oxygen_saturation_mg_l;
+use weather::Weather;
 
 /// The column runs from here, mixed as pools are in November.
 const FIRST_DAY: (i32, u32, u32) = (2024, 11, 20);
@@ -66,12 +69,12 @@ impl Site {
 
 /// Every file beside `site.yaml` and the plans, by its path in the folder.
 pub(crate) fn files(text: &str) -> BTreeMap<String, String> {
-    let (casts, spring) = years(&Site::read(text));
+    let (casts, spring, air) = years(&Site::read(text));
     let casts = casts.iter().map(|cast| cast.file(OF));
-    casts.chain([spring.plan(OF), spring.schedule(OF)]).collect()
+    casts.chain([spring.plan(OF), spring.schedule(OF), air.file(OF)]).collect()
 }
 
-fn years(site: &Site) -> (Vec<Cast>, Past) {
+fn years(site: &Site) -> (Vec<Cast>, Past, Weather) {
     let times: Vec<NaiveDateTime> = times(&TAKEN);
     let last = times[times.len() - 1].date();
     let (y, m, d) = FIRST_DAY;
@@ -81,7 +84,7 @@ fn years(site: &Site) -> (Vec<Cast>, Past) {
     let mut noise = [0.0; 3];
     let autumn = Water { temperature_c: 9.0, oxygen_mg_l: 10.4, conductance_us_cm: 210.0 };
     let mut column = Column::mixed(&site.basin, 0.0, rule_curve_m(day), autumn).with(NATURE);
-    let (mut casts, mut spring) = (Vec::new(), Past::default());
+    let (mut casts, mut spring, mut air) = (Vec::new(), Past::default(), Weather::new());
     while day <= last {
         for (value, kept) in noise.iter_mut().zip([0.8, 0.4, 0.85]) {
             *value = fading(&mut weather, kept, *value);
@@ -90,15 +93,26 @@ fn years(site: &Site) -> (Vec<Cast>, Past) {
         if day >= times[PAST_FROM].date() {
             spring.days.push(passed(site, day, &forcing));
         }
-        for _ in 0..STEPS_A_DAY {
-            column.step(&forcing, 86400.0 / f64::from(STEPS_A_DAY));
-        }
-        for &taken in times.iter().filter(|taken| taken.date() == day) {
-            casts.push(sound(&site.basin, &column, taken, &mut sensor));
+        air.keep(day, &forcing);
+        let midnight = day.and_time(NaiveTime::MIN);
+        let step_s = 86400.0 / f64::from(STEPS_A_DAY);
+        for step in 0..STEPS_A_DAY {
+            let begins_s = f64::from(step) * step_s;
+            let mut gone_s = 0.0;
+            // the sonde finds the pool as it is at its hour
+            for &taken in &times {
+                let after_s = (taken - midnight).num_seconds() as f64 - begins_s;
+                if (0.0..step_s).contains(&after_s) {
+                    column.step(&forcing, after_s - gone_s);
+                    gone_s = after_s;
+                    casts.push(sound(&site.basin, &column, taken, &mut sensor));
+                }
+            }
+            column.step(&forcing, step_s - gone_s);
         }
         day = day.succ_opt().unwrap();
     }
-    (casts, spring)
+    (casts, spring, air)
 }
 
 /// One day as the dam's book has it: the two gates by their place among the tower's, the uppermost first.

@@ -7,14 +7,15 @@ use std::sync::Arc;
 use chrono::Days;
 use gatemix::mix::limits::Move;
 use gatemix::mix::{Asked, Gate, Setting, draw_levels, groups, levels, release};
+use gatemix::rank::Criterion;
 use gatemix::season::{
-    Balance, Change, Choosing, Decision, Difference, Layers, Plan, PlanDay, Price, Run, SeasonDay, Setup,
-    Skies, Why, outcome,
+    Amount, Balance, Change, Choosing, Decision, Difference, Found, Layers, Needed, Plan, PlanDay, Price,
+    Run, SeasonDay, Setup, Skies, Why, outcome,
 };
 use gatemix::site::Strategy;
 use gatemix::tasks::Context;
-use gatemix::tasks::season::{Prices, SeasonAnswer, SeasonRun};
-use gatemix::tui::model::{Ahead, Priced, SeasonQuestion};
+use gatemix::tasks::season::{CaseNeeded, NeededAnswer, Prices, SeasonAnswer, SeasonRun};
+use gatemix::tui::model::{Ahead, Left, Priced, SeasonQuestion};
 use gatemix::tui::{Done, Event, Lane, Sent, Work};
 use gatemix::withdrawal::CrestForm;
 
@@ -49,6 +50,49 @@ pub(crate) fn answer_with(driver: &mut Driver, change: impl FnOnce(&mut Ahead)) 
     driver.send(Event::Sent(Sent::Done(Lane::Ahead, generation, done)));
 }
 
+/// Answers the question about the cold water needed on a date that waits: in the middling case too little is left, in
+/// the warm one enough, in the cool one nobody knows.
+pub(crate) fn answer_left(driver: &mut Driver) {
+    let (generation, work) = driver.question(Lane::Needed).unwrap();
+    let Work::Needed(question, date) = work else { panic!("the lane is that of what is needed") };
+    let context = question.base.changed(&question.changed).map_or_else(|_| question.base.clone(), Arc::new);
+    let amount = |usable_m3: f64, days_outside| Amount {
+        total_m3: usable_m3,
+        usable_m3: Some(usable_m3),
+        lost: 0,
+        days_outside,
+        oxygen_days: 0,
+    };
+    let case = |(name, least): (&str, Option<Amount>)| CaseNeeded {
+        case: name.to_owned(),
+        needed: Needed {
+            date,
+            threshold_c: 12.0,
+            made: Some(amount(50e6, 9)),
+            found: least
+                .map(|least| Found { least, lower: None, remain: Vec::new(), tried: vec![least] })
+                .ok_or_else(|| "no outlet is usable".to_owned()),
+            not_judged: Vec::new(),
+        },
+        foresight: false,
+    };
+    let of = [("middling", Some(amount(62e6, 3))), ("warm", Some(amount(41e6, 0))), ("cool", None)];
+    let main = season(&context, "early", "middling", "best");
+    let answer = NeededAnswer {
+        date,
+        threshold_c: 12.0,
+        plan: main.plan,
+        strategy: "best".to_owned(),
+        begins: context.on.date_naive(),
+        decide_days: 7,
+        cases: of.map(case).to_vec(),
+        notes: Vec::new(),
+        fingerprint: context.fingerprint.clone(),
+    };
+    let left = Box::new(Left { question, context, answer });
+    driver.send(Event::Sent(Sent::Done(Lane::Needed, generation, Done::Needed(Ok(left)))));
+}
+
 /// Prices of so many mixes: the first no sooner or later, each one after it a day later than the one before.
 fn priced(context: &Context, mixes: usize) -> Prices {
     let from = context.on.date_naive();
@@ -79,7 +123,7 @@ fn invented(question: SeasonQuestion) -> Ahead {
     let context = question.base.changed(&question.changed).map(Arc::new);
     let context = context.unwrap_or_else(|_| question.base.clone());
     let asked = &question.asked;
-    let strategy = asked.strategy.clone().unwrap_or_else(|| "best".to_owned());
+    let strategy = asked.chooses().unwrap_or_else(|| "best".to_owned());
     let file = asked.plan.as_deref().unwrap_or("plans/early.csv");
     let plan = file.trim_start_matches("plans/").trim_end_matches(".csv").to_owned();
     let case = asked.case.clone().unwrap_or_else(|| "middling".to_owned());
@@ -95,8 +139,9 @@ fn invented(question: SeasonQuestion) -> Ahead {
         others,
         begins,
         decides: begins,
-        decide_days: 7,
-        order: gatemix::rank::Criterion::USUAL.to_vec(),
+        decide_days: asked.every.as_deref().map_or(7, |days| days.parse().unwrap()),
+        order: Criterion::USUAL.to_vec(),
+        schedules: context.folder.schedules(),
         notes: Vec::new(),
         fingerprint: context.fingerprint.clone(),
     };

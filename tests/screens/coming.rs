@@ -58,9 +58,7 @@ fn compare(system: System) {
     let date = driver.session().season.day.unwrap().to_string();
     let days = answer["days"].as_array().unwrap();
     let day = days.iter().find(|day| day["date"] == date.as_str()).unwrap();
-    // the readout stands right of the pictures
-    let right: Vec<String> = text.lines().skip(3).map(|l| l.chars().skip(109).collect()).collect();
-    let joined = right.join(" ").split_whitespace().collect::<Vec<_>>().join(" ");
+    let joined = right(&text);
     let degrees = |v: &Value| format!("{} {}", shown.temperature(v), shown.degrees());
     let reached = answer["decisions"].as_array().unwrap().iter().rev();
     let reached = reached.filter(|on| on["date"].as_str() <= Some(date.as_str()));
@@ -81,6 +79,7 @@ fn compare(system: System) {
             format!("{} gates moved", answer["moves"]),
         ],
     );
+    left(&mut driver, &date, &shown);
     let table = driver.keys("t").text();
     let runs = answer["runs"].as_array().unwrap().iter().chain([&answer]);
     for run in runs {
@@ -90,6 +89,35 @@ fn compare(system: System) {
         let outside = format!(" {} d", run["score"]["days_outside"]);
         assert!(row.contains(&outside) && row.ends_with(&format!(" {}", run["moves"])), "{row} {outside}");
     }
+}
+
+/// The cold water needed on the date read, against the command.
+fn left(driver: &mut Driver, date: &str, shown: &Shown) {
+    driver.keys("l");
+    let words = ["--left".to_owned(), date.to_owned()];
+    let answer = answer_of(driver, "season", "season-numbers", &words);
+    let cases = answer["needed"]["cases"].as_array().unwrap();
+    assert_eq!(cases.len(), 3, "{answer}");
+    let joined = right(&driver.text());
+    for case in cases {
+        let m3 = case["needed"]["usable_m3"].as_f64().unwrap();
+        let amount = if shown.is_us() { m3 / 1233.481_837_547_52 } else { m3 / 1e6 };
+        let amount = if shown.is_us() { grouped(amount) } else { format!("{amount:.2} hm3") };
+        holds(&joined, &[format!("- {}: {amount}", case["case"].as_str().unwrap())]);
+    }
+}
+
+/// Acre-feet as they are shown.
+fn grouped(acre_ft: f64) -> String {
+    let digits = format!("{acre_ft:.0}");
+    let (thousands, rest) = digits.split_at(digits.len() - 3);
+    format!("{thousands},{rest} acre-ft")
+}
+
+/// The readout, which stands right of the pictures.
+fn right(text: &str) -> String {
+    let right: Vec<String> = text.lines().skip(3).map(|l| l.chars().skip(109).collect()).collect();
+    right.join(" ").split_whitespace().collect::<Vec<_>>().join(" ")
 }
 
 #[test]

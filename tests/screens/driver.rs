@@ -71,7 +71,7 @@ impl Driver {
             match effect {
                 Effect::Ask(generation, work) => {
                     self.waiting.retain(|(_, old)| old.lane() != work.lane());
-                    self.waiting.push_back((generation, work));
+                    self.waiting.push_back((generation, *work));
                 }
                 Effect::Stop(lane, _) => self.waiting.retain(|(_, old)| old.lane() != lane),
                 Effect::List(folder) => {
@@ -113,7 +113,7 @@ impl Driver {
     /// Answers until nothing is asked any more.
     pub(crate) fn settle(&mut self) {
         // the ranking and the river come last: what the others tell may ask for them anew
-        let lanes = [Lane::Quick, Lane::Aside, Lane::Long, Lane::Down, Lane::Ahead];
+        let lanes = [Lane::Quick, Lane::Aside, Lane::Long, Lane::Down, Lane::Ahead, Lane::Needed];
         let next = |d: &mut Self| lanes.into_iter().find_map(|l| d.question(l));
         while let Some(question) = next(self) {
             self.answer(question);

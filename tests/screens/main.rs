@@ -4,6 +4,7 @@
 
 mod ahead;
 mod arriving;
+mod asking;
 mod coming;
 mod downstream;
 mod driver;

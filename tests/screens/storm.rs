@@ -173,6 +173,9 @@ fn storm(seed: u64, events: usize) {
         if dice.below(ANSWERED) == 0 && driver.waits(Lane::Ahead) {
             ahead::answer(&mut driver);
         }
+        if dice.below(ANSWERED) == 0 && driver.waits(Lane::Needed) {
+            ahead::answer_left(&mut driver);
+        }
         let lanes =
             [(Lane::Quick, ANSWERED), (Lane::Aside, ANSWERED), (Lane::Down, ANSWERED), (Lane::Long, RANKED)];
         for (lane, one_in) in lanes {

@@ -154,12 +154,15 @@ impl Folder {
             Some((_, source)) => source?,
             None if Path::new(named).is_file() => text::read(Path::new(named), Format::Csv)?,
             None => {
-                let all = self.csv_sources(SCHEDULES, |_| true);
-                let known: Vec<String> = all.iter().map(|(file, _)| base(file).to_owned()).collect();
-                return Err(unknown("gate schedule", named, SCHEDULES, &known));
+                return Err(unknown("gate schedule", named, SCHEDULES, &self.schedules()));
             }
         };
         Ok(self.read_schedule(source))
+    }
+
+    /// Files of the gate schedules of the folder, without their folder, in order.
+    pub fn schedules(&self) -> Vec<String> {
+        self.csv_sources(SCHEDULES, |_| true).iter().map(|(file, _)| base(file).to_owned()).collect()
     }
 
     /// The gate schedule of the folder whose file is called as that of a plan; `None` where there is none.

@@ -66,7 +66,7 @@ impl Check {
                 format!("too little water above `{name}`: {found}, {bound} required")
             }
             Rule::Dry => {
-                format!("`{name}` stands out of the water, its opening at {}", self.said(self.bound))
+                format!("`{name}` lies above the pool, its opening at {}", self.said(self.bound))
             }
             _ => self.words(site),
         }

@@ -49,7 +49,11 @@ struct KnobJson {
     before: f64,
     after: f64,
     range: [f64; 2],
+    /// How far it can go while, the others following, the pool comes about as near.
+    as_near: [f64; 2],
     at_end: bool,
+    /// False: the casts do not tell it, and it stays as it was.
+    told: bool,
 }
 
 #[derive(Serialize)]
@@ -68,8 +72,15 @@ struct ApartJson {
 pub fn learned(context: &Context, answer: &LearnAnswer) -> String {
     let of = &answer.learned;
     let cast = |cast: &Dated| CastJson { date: cast.date.to_string(), file: cast.profile.file.clone() };
-    let knob =
-        |Fitted { name, before, after, range, at_end }| KnobJson { name, before, after, range, at_end };
+    let knob = |Fitted { name, before, after, range, near, at_end, told }| KnobJson {
+        name,
+        before,
+        after,
+        range,
+        as_near: near,
+        at_end,
+        told,
+    };
     written(&Shown {
         head: head(context, &answer.fingerprint, &[]),
         learned: LearnedJson {

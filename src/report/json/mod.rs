@@ -1,6 +1,7 @@
 //! Answers as JSON: SI whatever the display, absent is null, full precision.
 
 mod learned;
+mod needed;
 mod rank;
 mod rank_shape;
 mod river;
@@ -34,6 +35,7 @@ use super::sentence::{METHOD, caution};
 use targets::{conflicts, points, targets};
 
 pub use learned::learned;
+pub use needed::needed;
 pub use rank::{rank, rank_priced};
 pub use river::river;
 pub use season::season;

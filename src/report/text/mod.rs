@@ -15,7 +15,7 @@ use unicode_width::UnicodeWidthStr;
 use crate::problem::{Problem, Weight, harmless};
 use crate::tasks::rank::RankAnswer;
 use crate::tasks::river::RiverAnswer;
-use crate::tasks::season::{LearnAnswer, Prices, SeasonAnswer};
+use crate::tasks::season::{LearnAnswer, NeededAnswer, Prices, SeasonAnswer};
 use crate::tasks::{Context, Freshness, MixAnswer, PoolAnswer};
 use crate::units::{Dimension, System, show};
 
@@ -95,6 +95,14 @@ pub fn season(context: &Context, answer: &SeasonAnswer) -> String {
 pub fn learned(context: &Context, answer: &LearnAnswer) -> String {
     let mut out = head(context, &answer.fingerprint);
     out.push_str(&season::learned::body(context, answer));
+    out.push_str(&wrapped(caution(), 0));
+    out
+}
+
+/// The answer of `season --left`.
+pub fn needed(context: &Context, answer: &NeededAnswer) -> String {
+    let mut out = head(context, &answer.fingerprint);
+    out.push_str(&season::needed::body(context, answer));
     out.push_str(&wrapped(caution(), 0));
     out
 }

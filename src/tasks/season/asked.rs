@@ -8,7 +8,7 @@ use crate::files::folder::ListedPlan;
 use crate::files::text::Source;
 use crate::problem::{Problem, Weight};
 use crate::rank::Criterion;
-use crate::season::{Choosing, Plan, Skies};
+use crate::season::{Choosing, Plan, Schedule, Skies};
 use crate::site::{self, Strategy};
 use crate::tasks::rank::order;
 use crate::tasks::{Context, Failure};
@@ -31,6 +31,13 @@ pub struct SeasonAsked {
     pub order: Option<String>,
     /// The setting now, gate by gate; empty for the site's own.
     pub now: Vec<String>,
+}
+
+impl SeasonAsked {
+    /// Name of what chooses the gates, where that is asked.
+    pub fn chooses(&self) -> Option<String> {
+        self.schedule.as_deref().map(Schedule::called).or_else(|| self.strategy.clone())
+    }
 }
 
 /// Most days between decisions.

@@ -85,7 +85,10 @@ pub fn learn(context: &Context, asked: &LearnAsked, progress: Progress) -> Resul
     let last = third.date.pred_opt().unwrap_or(third.date);
     let skies = Skies::of_case(context.site(), &context.conditions, &case, first.date, last)
         .map_err(|why| refused(Problem::refused("no-air", why, "")))?;
-    let days = plan.days.iter().filter(|day| day.date < third.date).copied().collect();
+    notes.extend(air_of_months(context, first.date, last));
+    // the morning of the last cast as far as plan and air tell its day
+    let is_told = |date: NaiveDate| date <= last || (date == third.date && skies.days.contains_key(&date));
+    let days = plan.days.iter().filter(|day| is_told(day.date)).copied().collect();
     let setup = Setup {
         start: &first.profile,
         begins: first.date,
@@ -120,6 +123,20 @@ pub fn learn(context: &Context, asked: &LearnAsked, progress: Progress) -> Resul
         air: skies.from,
         learned,
         notes,
+    })
+}
+
+/// Says on how many days the weather is not that of the day; what of it the pool shows, the knobs would make up for.
+fn air_of_months(context: &Context, from: NaiveDate, to: NaiveDate) -> Option<Problem> {
+    let days = || from.iter_days().take_while(|date| *date <= to);
+    let untold = days().filter(|date| context.conditions.weather.day(*date).is_none()).count();
+    (untold > 0).then(|| {
+        let words = format!(
+            "the weather of {untold} of the {} days is not told, and mean figures stand for it: the knobs then make up \
+             for what the weather was",
+            days().count()
+        );
+        Problem::flag("air-of-months", words, "give a weather file of the days between: season.weather in site.yaml")
     })
 }
 

@@ -2,6 +2,7 @@
 
 mod asked;
 mod learn;
+mod needed;
 mod notes;
 mod price;
 mod table;
@@ -19,6 +20,7 @@ use super::{Context, Failure};
 
 pub use asked::SeasonAsked;
 pub use learn::{Dated, LearnAnswer, LearnAsked, learn};
+pub use needed::{CaseNeeded, NeededAnswer, needed};
 pub use price::{Prices, prices};
 
 /// One season of the answer.
@@ -72,6 +74,8 @@ pub struct SeasonAnswer {
     pub decide_days: u32,
     /// What counts first where the mix of a day is chosen.
     pub order: Vec<Criterion>,
+    /// Files of the gate schedules of the folder.
+    pub schedules: Vec<String>,
     /// Plans that were refused, and what was assumed.
     pub notes: Vec<Problem>,
     /// Fingerprint of the inputs, plans and all.
@@ -136,6 +140,7 @@ pub fn season(
         decides: if now.is_some() { understood.decides } else { understood.begins },
         decide_days: understood.decide_days,
         order: understood.order.clone(),
+        schedules: context.folder.schedules(),
         notes,
         fingerprint: understood.fingerprint.clone(),
     })

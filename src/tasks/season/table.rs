@@ -18,10 +18,34 @@ use super::asked::{Case, Understood};
 const SOLVED: f64 = 40.0;
 
 /// Whoever is told how much is done.
-type Progress<'a> = &'a (dyn Fn(f64) -> ControlFlow<()> + Sync);
+pub(super) type Progress<'a> = &'a (dyn Fn(f64) -> ControlFlow<()> + Sync);
 
 /// One season to run: its plan, its air, how its gates are chosen.
 type Job = (Arc<Plan>, Arc<Skies>, Choosing);
+
+/// Seasons that go on beside each other, told as one: how much is done of all of them, from a share of the whole on.
+pub(super) struct Beside<'a> {
+    done: Mutex<Vec<f64>>,
+    from: f64,
+    progress: Progress<'a>,
+}
+
+impl<'a> Beside<'a> {
+    pub(super) fn new(count: usize, from: f64, progress: Progress<'a>) -> Self {
+        Self { done: Mutex::new(vec![0.0; count]), from, progress }
+    }
+
+    /// Tells how much is done of one of them.
+    pub(super) fn tell(&self, job: usize, share: f64) -> ControlFlow<()> {
+        let all = self.done.lock().map_or(0.0, |mut all| {
+            if let Some(one) = all.get_mut(job) {
+                *one = share;
+            }
+            all.iter().sum::<f64>() / all.len() as f64
+        });
+        (self.progress)(self.from + (1.0 - self.from) * all)
+    }
+}
 
 /// What the seasons of an answer have in common.
 pub(super) struct Table<'a> {
@@ -56,7 +80,7 @@ impl Table<'_> {
         let mut jobs: Vec<Job> = Vec::new();
         let mut put = |plan: &Arc<Plan>, case: &Case, choosing: Choosing| match self.skies(plan, case) {
             Ok(skies) => jobs.push((plan.clone(), skies, choosing)),
-            Err(problem) => notes.push(Problem::flag("season-left-out", problem.words, problem.cure)),
+            Err(problem) => notes.push(left_out(problem)),
         };
         for case in of.cases.iter().filter(|case| !case.is(&of.case)) {
             put(&of.plan, case, again.clone());
@@ -70,18 +94,8 @@ impl Table<'_> {
                 put(&of.plan, &of.case, Choosing::By(strategy));
             }
         }
-        let main_share = self.main_share();
-        let done = Mutex::new(vec![0.0; jobs.len()]);
-        let tell = |job: usize, share: f64| {
-            let all = done.lock().map_or(0.0, |mut all| {
-                if let Some(one) = all.get_mut(job) {
-                    *one = share;
-                }
-                all.iter().sum::<f64>() / all.len() as f64
-            });
-            progress(main_share + (1.0 - main_share) * all)
-        };
-        jobs.par_iter().enumerate().map(|(i, job)| self.run(job, &|share| tell(i, share))).collect()
+        let beside = Beside::new(jobs.len(), self.main_share(), progress);
+        jobs.par_iter().enumerate().map(|(i, job)| self.run(job, &|share| beside.tell(i, share))).collect()
     }
 
     /// Share of the work that the season spoken of is.
@@ -93,18 +107,7 @@ impl Table<'_> {
     }
 
     fn run(&self, (plan, skies, choosing): &Job, progress: Progress) -> Result<SeasonRun, Failure> {
-        let of = self.understood;
-        let setup = Setup {
-            start: &self.context.profile,
-            begins: of.begins,
-            decides: of.decides,
-            now: self.now,
-            plan,
-            skies,
-            choosing: choosing.clone(),
-            decide_days: of.decide_days,
-            order: &of.order,
-        };
+        let setup = self.setup(plan, skies, choosing.clone());
         let run = run(&setup, progress).ok_or(Failure::Stopped)?;
         let outcome = outcome(&setup, &run);
         let is_chosen =
@@ -115,16 +118,37 @@ impl Table<'_> {
             run,
             outcome,
             foresight: false,
-            order: if is_chosen { of.order.clone() } else { Vec::new() },
+            order: if is_chosen { self.understood.order.clone() } else { Vec::new() },
         })
     }
 
+    /// What a season is made from.
+    pub(super) fn setup<'a>(&'a self, plan: &'a Plan, skies: &'a Skies, choosing: Choosing) -> Setup<'a> {
+        let of = self.understood;
+        Setup {
+            start: &self.context.profile,
+            begins: of.begins,
+            decides: of.decides,
+            now: self.now,
+            plan,
+            skies,
+            choosing,
+            decide_days: of.decide_days,
+            order: &of.order,
+        }
+    }
+
     /// The air of a case over the days of a plan.
-    fn skies(&self, plan: &Plan, case: &Case) -> Result<Arc<Skies>, Problem> {
+    pub(super) fn skies(&self, plan: &Plan, case: &Case) -> Result<Arc<Skies>, Problem> {
         case.skies(self.context, self.understood.begins, plan)
     }
 
-    fn refused(&self, problem: Problem) -> Failure {
+    pub(super) fn refused(&self, problem: Problem) -> Failure {
         Failure::Refused(vec![problem], self.context.system)
     }
+}
+
+/// A season that is left out, and why.
+pub(super) fn left_out(problem: Problem) -> Problem {
+    Problem::flag("season-left-out", problem.words, problem.cure)
 }

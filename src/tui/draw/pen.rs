@@ -45,6 +45,14 @@ impl<'a> Pen<'a> {
         self.put(end.saturating_sub(text.width()), row, &text, role);
     }
 
+    /// The colour behind a meaning, behind what stands in a cell.
+    pub(super) fn behind(&mut self, col: usize, row: usize, role: Role) {
+        let cell = self.place(col, row).and_then(|at| self.buf.cell_mut(at));
+        if let (Some(cell), Some(colour)) = (cell, self.look.style(role).bg) {
+            cell.set_bg(colour);
+        }
+    }
+
     /// A character where nothing stands yet.
     pub(super) fn fill(&mut self, col: usize, row: usize, symbol: &str, role: Role) {
         let blank = |at| self.buf.cell(at).is_some_and(|c| c.symbol() == " ");

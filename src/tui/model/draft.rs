@@ -17,6 +17,8 @@ pub struct Draft {
     pub order: Vec<Criterion>,
     /// Outlets the ranking leaves out.
     pub without: Vec<usize>,
+    /// Days between the decisions of a season; the site's own when absent.
+    pub every: Option<u32>,
     /// Settings tried; a well may keep a total while all its gates are shut.
     pub tries: Vec<Given>,
     /// The one on the board.
@@ -32,11 +34,23 @@ impl Draft {
             changed: Changed::default(),
             release_m3s: None,
             order: Criterion::USUAL.to_vec(),
+            every: None,
             without: Vec::new(),
             tries: vec![now],
             at: 0,
             beside: None,
         }
+    }
+
+    /// The order of the criteria in words, where it is not the usual one.
+    pub fn order_words(&self) -> Option<String> {
+        let names = || self.order.iter().map(|c| c.name()).collect::<Vec<_>>().join(",");
+        (self.order != Criterion::USUAL).then(names)
+    }
+
+    /// Whether another asks for the same seasons.
+    pub fn goes_as(&self, other: &Self) -> bool {
+        self.changed == other.changed && self.order == other.order && self.every == other.every
     }
 
     /// Whether another asks for the same ranking, gates left out aside.

@@ -16,7 +16,7 @@ use crate::units::System;
 pub use board::{Cell, Row, rows};
 pub use draft::{Draft, History};
 pub use field::{Field, Typed, Value};
-pub use season::{Ahead, Priced, SeasonPage, SeasonQuestion, SeasonShown, SeasonView};
+pub use season::{Ahead, Left, Priced, SeasonPage, SeasonQuestion, SeasonShown, SeasonView};
 pub use session::{
     Downstream, MixView, Page, PoolView, RankView, Ranked, RiverPage, RiverView, Session, Shown, Whole,
 };
@@ -177,6 +177,8 @@ pub struct Model {
     pub down: Option<Under>,
     /// What is being computed of the season.
     pub ahead: Option<Under>,
+    /// What is being sought of the cold water needed on a date.
+    pub needed: Option<Under>,
 }
 
 impl Model {
@@ -199,6 +201,7 @@ impl Model {
             aside: None,
             down: None,
             ahead: None,
+            needed: None,
         }
     }
 
@@ -225,7 +228,9 @@ impl Model {
 
     /// Whether anything is being computed.
     pub fn under_way(&self) -> bool {
-        [&self.quick, &self.long, &self.aside, &self.down, &self.ahead].into_iter().any(Option::is_some)
+        [&self.quick, &self.long, &self.aside, &self.down, &self.ahead, &self.needed]
+            .into_iter()
+            .any(Option::is_some)
     }
 
     /// What is under way in a lane.
@@ -236,6 +241,7 @@ impl Model {
             Lane::Aside => &mut self.aside,
             Lane::Down => &mut self.down,
             Lane::Ahead => &mut self.ahead,
+            Lane::Needed => &mut self.needed,
         }
     }
 }

@@ -4,7 +4,7 @@ use std::sync::Arc;
 
 use chrono::NaiveDate;
 
-use crate::tasks::season::{Prices, SeasonAnswer, SeasonAsked, SeasonRun};
+use crate::tasks::season::{NeededAnswer, Prices, SeasonAnswer, SeasonAsked, SeasonRun};
 use crate::tasks::{Changed, Context};
 
 use super::session::Session;
@@ -29,8 +29,14 @@ impl SeasonQuestion {
         self.asked == other.asked && self.is_beside(other)
     }
 
-    /// Whether another asks of the same files under the same changes.
+    /// Whether another asks of the same files under the same changes, decided as often and in the same order.
     pub fn is_beside(&self, other: &Self) -> bool {
+        let (own, its) = (&self.asked, &other.asked);
+        self.is_of(other) && own.every == its.every && own.order == its.order
+    }
+
+    /// Whether another asks of the same files under the same changes.
+    fn is_of(&self, other: &Self) -> bool {
         Arc::ptr_eq(&self.base, &other.base) && self.changed == other.changed
     }
 }
@@ -57,7 +63,7 @@ impl Ahead {
         let names = [
             name(&asked.plan, &own.plan, &main.plan.file)?,
             name(&asked.case, &own.case, &main.run.case)?,
-            name(&asked.strategy, &own.strategy, &main.run.strategy)?,
+            name(&asked.chooses(), &own.chooses(), &main.run.strategy)?,
         ];
         self.answer.runs().find(|r| [&r.plan.file, &r.run.case, &r.run.strategy] == names.each_ref())
     }
@@ -65,10 +71,10 @@ impl Ahead {
     /// The season that comes nearest to what is asked: of its plan, then of its strategy, then of its case.
     fn nearest(&self, asked: &SeasonAsked) -> &SeasonRun {
         let differs = |name: &Option<String>, own: &str| name.as_ref().is_some_and(|n| n != own);
+        let chooses = asked.chooses();
         let far = |r: &&SeasonRun| {
             let run = &r.run;
-            let of =
-                [(&asked.plan, &r.plan.file), (&asked.strategy, &run.strategy), (&asked.case, &run.case)];
+            let of = [(&asked.plan, &r.plan.file), (&chooses, &run.strategy), (&asked.case, &run.case)];
             of.map(|(name, own)| differs(name, own))
         };
         self.answer.runs().min_by_key(far).unwrap_or(&self.answer.main)
@@ -84,6 +90,29 @@ pub struct Priced {
     pub asked: SeasonAsked,
     /// The prices.
     pub prices: Prices,
+}
+
+/// The cold water needed on a date, with what it was sought for.
+#[derive(Debug, Clone)]
+pub struct Left {
+    /// The question.
+    pub question: SeasonQuestion,
+    /// The files with what was changed.
+    pub context: Arc<Context>,
+    /// The answer.
+    pub answer: NeededAnswer,
+}
+
+impl Left {
+    /// Whether it answers a question about a date. Every case is told: which is spoken of matters to one that is solved
+    /// alone.
+    fn answers(&self, question: &SeasonQuestion, date: NaiveDate) -> bool {
+        let of = |asked: &SeasonAsked| SeasonAsked { case: None, ..asked.clone() };
+        let solved = self.answer.cases.iter().any(|case| case.foresight);
+        let same = self.question.asked == question.asked
+            || (!solved && of(&self.question.asked) == of(&question.asked));
+        self.answer.date == date && same && self.question.is_of(question)
+    }
 }
 
 /// What the season screen shows.
@@ -132,7 +161,17 @@ impl Session {
         SeasonQuestion {
             base: Arc::clone(&self.base),
             changed: self.draft().changed.clone(),
-            asked: self.season.chosen.clone(),
+            asked: self.seasons_asked(),
+        }
+    }
+
+    /// Plan, case and strategy as chosen, decided as often and in the order that is set.
+    fn seasons_asked(&self) -> SeasonAsked {
+        let draft = self.draft();
+        SeasonAsked {
+            every: draft.every.map(|days| days.to_string()),
+            order: draft.order_words(),
+            ..self.season.chosen.clone()
         }
     }
 
@@ -154,7 +193,7 @@ impl Session {
 
     /// What prices of mixes are asked with: plan and case as chosen on the season screen.
     pub fn price_asked(&self) -> SeasonAsked {
-        SeasonAsked { strategy: None, ..self.season.chosen.clone() }
+        SeasonAsked { strategy: None, schedule: None, ..self.seasons_asked() }
     }
 
     /// The prices of the ranking there is, under the plan and the case chosen.
@@ -171,11 +210,34 @@ impl Session {
 
     /// Takes an answer; those of other files and changes are dropped.
     pub fn take_ahead(&mut self, ahead: Ahead) {
-        let beside = |a: &Ahead| a.question.is_beside(&ahead.question) && !a.question.is(&ahead.question);
-        self.ahead.retain(beside);
+        self.ahead.retain(|a| a.question.is_of(&ahead.question) && !a.question.is(&ahead.question));
         if self.ahead.len() >= KEPT {
             self.ahead.remove(0);
         }
         self.ahead.push(ahead);
+    }
+
+    /// The day read, from 0, of the season shown.
+    pub fn day_read(&self) -> Option<usize> {
+        let days = &self.season_shown()?.run.run.days;
+        let last = days.len().checked_sub(1)?;
+        let of = |day: NaiveDate| days.iter().position(|d| d.date >= day).unwrap_or(last);
+        Some(self.season.day.map_or(0, of))
+    }
+
+    /// The cold water needed on a date, where that was sought for what is chosen now.
+    pub fn left_on(&self, date: NaiveDate) -> Option<&Left> {
+        let question = self.season_question();
+        self.left.iter().rev().find(|left| left.answers(&question, date))
+    }
+
+    /// Takes the cold water needed on a date.
+    pub fn take_left(&mut self, left: Left) {
+        self.left
+            .retain(|l| l.question.is_of(&left.question) && !l.answers(&left.question, left.answer.date));
+        if self.left.len() >= KEPT {
+            self.left.remove(0);
+        }
+        self.left.push(left);
     }
 }

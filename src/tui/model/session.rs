@@ -2,6 +2,8 @@
 
 use std::sync::Arc;
 
+use chrono::NaiveDate;
+
 use crate::tasks::rank::{RankAnswer, Shown as Mix};
 use crate::tasks::river::RiverAnswer;
 use crate::tasks::{Cast, Context, Failure, Given, MixAnswer, PoolAnswer};
@@ -10,7 +12,7 @@ use super::super::work::Anew;
 use super::Screen;
 use super::board::{Cell, Row, rows};
 use super::draft::{Draft, History};
-use super::season::{Ahead, Priced, SeasonQuestion, SeasonView};
+use super::season::{Ahead, Left, Priced, SeasonQuestion, SeasonView};
 use super::tries::taken;
 
 /// Pool and settings as they were computed together.
@@ -176,6 +178,10 @@ pub struct Session {
     pub season_wrong: Option<Failure>,
     /// The season screen.
     pub season: SeasonView,
+    /// The cold water needed on dates, as far as it was asked, the newest last.
+    pub left: Vec<Left>,
+    /// The question about it that is under way.
+    pub left_asked: Option<(SeasonQuestion, NaiveDate)>,
     /// What the mixes of a ranking cost by the end of the season: the last there is.
     pub priced: Option<Priced>,
     /// Why the newest question about it has no answer.
@@ -212,6 +218,8 @@ impl Session {
             season_asked: None,
             season_wrong: None,
             season: SeasonView::default(),
+            left: Vec::new(),
+            left_asked: None,
             priced: None,
             price_wrong: None,
         }

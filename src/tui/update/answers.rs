@@ -50,6 +50,10 @@ pub(super) fn sent(model: &mut Model, sent: Sent) -> Vec<Effect> {
                     ask_river(model).into_iter().collect()
                 }
                 Done::Ahead(ahead) => super::season::told(model, ahead),
+                Done::Needed(left) => {
+                    super::needed::told(model, left);
+                    Vec::new()
+                }
                 Done::Priced(priced) => super::rank::priced(model, priced),
                 Done::Down(down) => {
                     if let Some(session) = model.session_mut() {

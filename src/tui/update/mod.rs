@@ -4,6 +4,7 @@ mod answers;
 mod list;
 mod mix;
 mod mouse;
+mod needed;
 mod pool;
 mod rank;
 mod river;
@@ -25,7 +26,7 @@ pub(super) use river::rules;
 
 use super::keys::{Action, Place, action};
 use super::model::{Choice, Draft, Likes, Message, Model, Over, Screen, Session, Stage, Under};
-use super::view::{answer_text, mix_rows, rank_rows, river_rows, rule_in_sight, season_rows};
+use super::view::{answer_text, failure_words, mix_rows, rank_rows, river_rows, rule_in_sight, season_rows};
 use super::work::{Lane, On, Seen, Sent, Work};
 
 /// A message.
@@ -57,7 +58,7 @@ pub enum Event {
 #[derive(Debug)]
 pub enum Effect {
     /// Compute.
-    Ask(u64, Work),
+    Ask(u64, Box<Work>),
     /// Stop computing in a lane: nothing of this generation or before is wanted.
     Stop(Lane, u64),
     /// Notice when the files of a site differ from what they were.
@@ -233,7 +234,7 @@ fn back(model: &mut Model) -> Vec<Effect> {
         }
     }
     let season = model.session().is_some_and(|s| s.screen == Screen::Season);
-    if season && let Some(effect) = season::stop(model) {
+    if season && let Some(effect) = season::stop(model).or_else(|| needed::stop(model)) {
         return vec![effect];
     }
     if let Some(under) = model.long.take() {
@@ -241,7 +242,7 @@ fn back(model: &mut Model) -> Vec<Effect> {
         let stop = Effect::Stop(Lane::Long, under.generation + 1);
         return std::iter::once(stop).chain(ask_river(model)).collect();
     }
-    if let Some(effect) = season::stop(model) {
+    if let Some(effect) = season::stop(model).or_else(|| needed::stop(model)) {
         return vec![effect];
     }
     model.message = None;
@@ -305,7 +306,7 @@ fn ask(model: &mut Model, work: Work) -> Effect {
     let generation = model.generation;
     let opening = matches!(work, Work::Open(..));
     *model.under(work.lane()) = Some(Under { generation, since: model.clock, done: 0.0, opening });
-    Effect::Ask(generation, work)
+    Effect::Ask(generation, Box::new(work))
 }
 
 /// Takes a new draft and asks what that makes necessary.
@@ -333,6 +334,9 @@ fn recompute(model: &mut Model, before: &Draft) -> Vec<Effect> {
     }
     if ranks {
         effects.extend(ask_rank(model));
+    }
+    if !mixes && draft_of(model).is_some_and(|d| !d.goes_as(before)) {
+        effects.extend(season::ask(model));
     }
     if draft_of(model).is_some_and(|d| d.changed.on != before.changed.on) {
         effects.extend(ask_casts(model));

@@ -5,6 +5,7 @@ use std::collections::BTreeSet;
 use chrono::{Days, NaiveDate};
 
 use crate::problem::harmless;
+use crate::season::Schedule;
 use crate::site::Strategy;
 use crate::tasks::Failure;
 use crate::tasks::season::SeasonAsked;
@@ -12,22 +13,26 @@ use crate::tasks::season::SeasonAsked;
 use super::super::keys::Action;
 use super::super::model::{Ahead, Model, Screen, SeasonPage, SeasonShown, Session};
 use super::super::work::{Lane, Work};
-use super::{Effect, complain, say, season_rows};
+use super::mix::back_and_forth;
+use super::{Effect, change, complain, say, season_rows};
 
 /// Lines of a page, and days of a week (choice).
 const PAGE: usize = 5;
 const WEEK: i64 = 7;
+/// Days between decisions that can be chosen (choice).
+const EVERY: [u32; 4] = [1, 3, 7, 14];
 
 /// Does what a key asks for.
 pub(super) fn act(model: &mut Model, action: Action) -> Vec<Effect> {
     let Some(session) = model.session() else { return Vec::new() };
     let pictures = session.season.page == SeasonPage::Pictures;
     match action {
-        Action::Case => return choose(model, "case", cases, case_of, |asked| &mut asked.case),
-        Action::Plan => return choose(model, "plan", plans, plan_of, |asked| &mut asked.plan),
-        Action::Strategy => {
-            return choose(model, "strategy", strategies, strategy_of, |asked| &mut asked.strategy);
-        }
+        Action::Case => return choose(model, &CASE),
+        Action::Plan => return choose(model, &PLAN),
+        Action::Strategy => return choose(model, &STRATEGY),
+        Action::Every => return every(model),
+        Action::Needed => return super::needed::asked(model),
+        Action::Undo => return undo(model),
         Action::Again => return again(model),
         Action::Beside => turn(model, SeasonPage::Beside),
         Action::Calendar => turn(model, SeasonPage::Calendar),
@@ -135,22 +140,52 @@ fn turn(model: &mut Model, page: SeasonPage) {
     }
 }
 
-/// Chooses the next of some names, and asks where that season is not known yet.
-fn choose(
-    model: &mut Model,
-    what: &str,
+/// What is chosen among names: what it is called, the names there are, the one shown, the one chosen, and how another is
+/// chosen.
+struct Selection {
+    what: &'static str,
     names: fn(&SeasonShown) -> Vec<String>,
-    of: fn(&SeasonShown) -> String,
-    to: fn(&mut SeasonAsked) -> &mut Option<String>,
-) -> Vec<Effect> {
+    shown: fn(&SeasonShown) -> String,
+    chosen: fn(&SeasonAsked) -> Option<String>,
+    choose: fn(&mut SeasonAsked, String, &SeasonShown),
+}
+
+const CASE: Selection = Selection {
+    what: "case",
+    names: cases,
+    shown: case_of,
+    chosen: |asked| asked.case.clone(),
+    choose: |asked, name, _| asked.case = Some(name),
+};
+const PLAN: Selection = Selection {
+    what: "plan",
+    names: plans,
+    shown: plan_of,
+    chosen: |asked| asked.plan.clone(),
+    choose: |asked, name, _| asked.plan = Some(name),
+};
+const STRATEGY: Selection = Selection {
+    what: "strategy",
+    names: strategies,
+    shown: strategy_of,
+    chosen: SeasonAsked::chooses,
+    choose: chooses,
+};
+
+/// Chooses the next of some names, and asks where that season is not known yet.
+fn choose(model: &mut Model, of: &Selection) -> Vec<Effect> {
+    let what = of.what;
     let next = model.session().and_then(|session| {
         let shown = session.season_shown()?;
-        let names = names(&shown);
-        let here = to(&mut session.season.chosen.clone()).clone().unwrap_or_else(|| of(&shown));
+        let names = (of.names)(&shown);
+        let mut chosen = session.season.chosen.clone();
+        let here = (of.chosen)(&chosen).unwrap_or_else(|| (of.shown)(&shown));
         let at = names.iter().position(|n| *n == here).map_or(0, |i| i + 1);
-        names.get(at % names.len().max(1)).cloned().filter(|n| *n != here)
+        let next = names.get(at % names.len().max(1)).filter(|n| **n != here)?;
+        (of.choose)(&mut chosen, next.clone(), &shown);
+        Some((next.clone(), chosen))
     });
-    let Some(next) = next else {
+    let Some((next, chosen)) = next else {
         let words = if model.session().is_some_and(|s| s.season_shown().is_some()) {
             format!("there is no other {what}")
         } else {
@@ -161,7 +196,7 @@ fn choose(
     };
     say(model, format!("{what} {}", harmless(&next)));
     if let Some(session) = model.session_mut() {
-        *to(&mut session.season.chosen) = Some(next);
+        session.season.chosen = chosen;
         session.season_wrong = None;
     }
     settle(model);
@@ -187,8 +222,42 @@ fn plans(shown: &SeasonShown) -> Vec<String> {
     files.into_iter().cloned().collect()
 }
 
-fn strategies(_: &SeasonShown) -> Vec<String> {
-    Strategy::NAMES.iter().map(|s| s.0.to_owned()).collect()
+/// The strategies, then the gate schedules of the folder.
+fn strategies(shown: &SeasonShown) -> Vec<String> {
+    let schedules = shown.ahead.answer.schedules.iter().map(|file| Schedule::called(file));
+    Strategy::NAMES.iter().map(|s| s.0.to_owned()).chain(schedules).collect()
+}
+
+/// Gates by a strategy of a name, or by a schedule that is called so.
+fn chooses(asked: &mut SeasonAsked, name: String, shown: &SeasonShown) {
+    let mut schedules = shown.ahead.answer.schedules.iter();
+    asked.schedule = schedules.find(|file| Schedule::called(file) == name).cloned();
+    asked.strategy = asked.schedule.is_none().then_some(name);
+}
+
+/// The next number of days between decisions; the site's own is among them.
+fn every(model: &mut Model) -> Vec<Effect> {
+    let effects = change(model, |session, draft| {
+        let own = session.base.site().season.decide_days;
+        let days: BTreeSet<u32> = EVERY.into_iter().chain([own]).collect();
+        let now = draft.every.unwrap_or(own);
+        let next = days.iter().find(|d| **d > now).or(days.first()).copied();
+        draft.every = next.filter(|days| *days != own);
+    });
+    settle(model);
+    effects
+}
+
+/// Takes the last change back, and says so where this screen does not show it.
+fn undo(model: &mut Model) -> Vec<Effect> {
+    let every = |model: &Model| model.session().map(|s| s.draft().every);
+    let before = every(model);
+    let effects = back_and_forth(model, true);
+    if model.message.is_none() && every(model) == before {
+        say(model, "the last change, of another screen, is taken back; r makes it again there");
+    }
+    settle(model);
+    effects
 }
 
 fn case_of(shown: &SeasonShown) -> String {

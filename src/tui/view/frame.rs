@@ -254,6 +254,9 @@ pub(super) fn status(model: &Model, session: &Session) -> (String, Role) {
         let what = if model.prices_mixes() { "prices" } else { "season" };
         return (format!("{what} {:.0} %{before}, Esc stops", 100.0 * under.done), Role::Warn);
     }
+    if let Some(under) = model.needed.as_ref().filter(|under| is_long(model, under)) {
+        return (format!("cold water needed {:.0} %, Esc stops", 100.0 * under.done), Role::Warn);
+    }
     let broken = broken_limits(session);
     if session.wrong.is_none() && session.screen == Screen::Mix && broken > 0 {
         let plural = if broken == 1 { "" } else { "s" };

@@ -137,7 +137,7 @@ pub(super) fn mix_rows(model: &Model) -> usize {
 }
 
 /// Why there is no answer, in one sentence.
-fn failure_words(failure: &Failure, system: System) -> String {
+pub(super) fn failure_words(failure: &Failure, system: System) -> String {
     match failure {
         Failure::Usage(words) => harmless(words),
         Failure::Refused(problems, _) => {

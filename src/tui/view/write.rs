@@ -24,10 +24,22 @@ pub(super) fn put_right(buf: &mut Buffer, area: Rect, end: u16, row: u16, text: 
 
 /// Words wrapped at a width, later lines indented.
 pub(super) fn wrapped(text: &str, width: usize, indent: usize) -> Vec<String> {
+    filled(text.split_whitespace(), width, indent)
+}
+
+/// The same, parted behind commas; only what is too long between two of them is parted at its words.
+pub(super) fn at_commas(text: &str, width: usize, indent: usize) -> Vec<String> {
+    let pieces = text.split_inclusive(", ").map(str::trim).flat_map(|piece| {
+        if indent + piece.width() <= width { vec![piece] } else { piece.split_whitespace().collect() }
+    });
+    filled(pieces, width, indent)
+}
+
+fn filled<'a>(words: impl Iterator<Item = &'a str>, width: usize, indent: usize) -> Vec<String> {
     let mut lines = Vec::new();
     let mut line = String::new();
     let mut used = 0;
-    for word in text.split_whitespace() {
+    for word in words {
         let wide = word.width();
         if used > 0 && used + 1 + wide > width {
             lines.push(std::mem::take(&mut line));

@@ -7,19 +7,7 @@ use chrono::{Datelike, NaiveDate};
 use rand_pcg::Pcg32;
 
 use super::super::season::{bell, fading, yearly};
-use super::{FORECAST_DAYS, Years};
-
-/// The weather of an hour.
-#[derive(Clone, Copy)]
-pub(crate) struct Hour {
-    pub(crate) air_c: f64,
-    pub(crate) dew_point_c: f64,
-    /// At 10 m.
-    pub(crate) wind_m_s: f64,
-    /// 0 to 1.
-    pub(crate) cloud: f64,
-    pub(crate) sun_w_m2: f64,
-}
+use super::{FORECAST_DAYS, Hour, Years};
 
 /// Noise of the day: departures from the season, standard deviation 1, that fade over some days.
 pub(crate) struct Weather {

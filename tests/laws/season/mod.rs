@@ -4,6 +4,7 @@ mod balance;
 mod brim;
 mod drawdown;
 mod learn;
+mod needed;
 mod outflow;
 mod still;
 mod surface;

@@ -7,7 +7,7 @@ use crate::problem::harmless;
 use crate::rank::Criterion;
 use crate::season::{Decision, Fully, GateLife, Reached, Why};
 use crate::site::Site;
-use crate::target::Target;
+use crate::target::{DAM, Target};
 use crate::tasks::Context;
 use crate::tasks::season::SeasonRun;
 use crate::units::{Dimension, System, figure, in_system};
@@ -19,13 +19,13 @@ use super::short;
 const NAME: usize = 16;
 const DATE: usize = 8;
 /// Columns of what is released.
-const RELEASED: usize = 10;
+const RELEASED: usize = 9;
 /// A miss that shows as a tenth, C (choice: half a tenth of the larger degree).
 const SEEN_C: f64 = 0.05;
 /// A miss that is round-off, C (choice).
 const SAME_C: f64 = 1e-9;
 /// Columns of a range.
-const RANGE: usize = 16;
+const RANGE: usize = 13;
 
 /// When every gate can be used: first and last day, why not longer, whom to tell by when.
 pub fn gates(context: &Context, run: &SeasonRun, system: System) -> Vec<String> {
@@ -175,21 +175,31 @@ fn passed_over(run: &SeasonRun, on: &Reached, released_c: f64, system: System) -
     let by = outside(if over > 0.0 { over } else { under }, system)?;
     let place = |of: Criterion| run.order.iter().position(|criterion| *criterion == of);
     let why = match (place(Criterion::Oxygen), place(Criterion::Range)) {
-        (Some(oxygen), Some(range)) if oxygen < range && wants_oxygen(run, on.date) => {
-            "; oxygen comes first in the order"
+        (Some(oxygen), Some(range)) if oxygen < range && is_short_of_oxygen(run, on.date) => {
+            ": oxygen comes first"
         }
-        _ => "",
+        _ => ", though within reach",
     };
-    Some(format!("released {by}, though within reach{why}"))
+    Some(format!("{by}{why}"))
 }
 
-/// Whether a hard floor of oxygen holds on a date.
-fn wants_oxygen(run: &SeasonRun, date: NaiveDate) -> bool {
+/// Whether the oxygen of a day lies below a hard floor, or no more than a step of the order above it.
+fn is_short_of_oxygen(run: &SeasonRun, date: NaiveDate) -> bool {
     let site = &run.skies.site;
-    let is_floor = |rule: &Target| rule.oxygen_min_mg_l.is_some() || rule.oxygen_min_share.is_some();
-    let holds =
-        |rule: &&Target| !rule.soft && is_floor(rule) && rule.valid_on(date, site.year_type.as_deref());
-    site.targets.iter().any(|rule| holds(&rule))
+    let points = site.river.as_ref().map_or(&[][..], |river| &river.points);
+    let Some(day) = run.run.days.iter().find(|day| day.date == date) else { return false };
+    let oxygen = |rule: &Target| {
+        if rule.point == DAM {
+            return day.release?.oxygen_below_mg_l;
+        }
+        let point = points.iter().position(|point| point.name == rule.point)?;
+        day.points.as_ref()?.get(point)?.oxygen_min_mg_l
+    };
+    let hard = site.targets.iter().filter(|rule| !rule.soft);
+    let mut floors = hard
+        .filter(|rule| rule.valid_on(date, site.year_type.as_deref()))
+        .filter_map(|rule| Some((oxygen(rule)?, rule.oxygen_min_mg_l?)));
+    floors.any(|(oxygen, floor)| oxygen < floor + site.bins.oxygen_mg_l)
 }
 
 /// How far outside a range, more than zero above it; `None` where that is less than is shown.

@@ -1,7 +1,7 @@
 //! What was learned of the pool, in words, with the lines to put into the site file.
 
 use crate::problem::{Problem, harmless};
-use crate::season::{Apart, Fitted, Learned};
+use crate::season::{AS_NEAR, Apart, Fitted, Learned};
 use crate::tasks::Context;
 use crate::tasks::season::LearnAnswer;
 use crate::units::{Dimension, System, show};
@@ -35,9 +35,21 @@ pub(in crate::report::text) fn body(context: &Context, answer: &LearnAnswer) -> 
     out.push_str(&labelled("Fitted", &fitted));
     let tested = format!("the pool computed on to {}, not used: {}", third.date, off(learned.tested, system));
     out.push_str(&labelled("Tested", &tested));
-    out.push_str("\nWhat nobody measures        before    after   published range\n");
+    out.push_str("\nWhat nobody measures         before    after   about as near    published range\n");
     for fit in learned.each() {
         out.push_str(&row(&fit));
+    }
+    let off = show(AS_NEAR, Dimension::TemperatureDifference, system, 2);
+    let near = format!(
+        "  about as near: with it there, and the others following, the pool is off by no more than {off} or {AS_NEAR:.2} \
+         mg/L, or a tenth, beside the best"
+    );
+    out.push_str(&wrapped(&near, 4));
+    if !learned.untold.is_empty() {
+        out.push_str(&wrapped(
+            "  - not told: all of the range comes about as near, so it stays as it was",
+            4,
+        ));
     }
     if !learned.at_end.is_empty() {
         out.push_str(&wrapped("  ! at an end of what is published: the pool asks for more than that", 4));
@@ -68,13 +80,18 @@ fn off([before, after]: [Apart; 2], system: System) -> String {
     format!("off by {} (root mean square), now by {}{oxygen}", c(before), c(after))
 }
 
-/// A knob before and after, marked where it stands at an end of its range.
+/// A knob before and after, marked where it stands at an end of its range or the casts do not tell it.
 fn row(fit: &Fitted) -> String {
     let scale = if fit.name == WIND { 100.0 } else { 1.0 };
     let of = |value: f64| figures(scale * value);
-    let mark = if fit.at_end { "  ! at an end" } else { "" };
-    let range = format!("{} to {}", of(fit.range[0]), of(fit.range[1]));
-    format!("  {:<24} {:>8} {:>8}   {range}{mark}\n", called(fit.name), of(fit.before), of(fit.after))
+    let mark = match (fit.told, fit.at_end) {
+        (false, _) => '-',
+        (_, true) => '!',
+        _ => ' ',
+    };
+    let [near, range] = [fit.near, fit.range].map(|[low, high]| format!("{} to {}", of(low), of(high)));
+    let (before, after) = (of(fit.before), of(fit.after));
+    format!("{mark} {:<24} {before:>8} {after:>8}   {near:<16} {range}\n", called(fit.name))
 }
 
 /// The knob whose figures are percent.
@@ -102,16 +119,22 @@ fn figures(value: f64) -> String {
     format!("{value:.decimals$}")
 }
 
-/// The lines for the site file.
+/// The lines for the site file: of what the casts tell.
 pub(in crate::report) fn lines(learned: &Learned) -> Vec<String> {
     let line = |fit: Fitted| {
         let value = figures(fit.after);
         match fit.name {
             WIND => format!("  wind_share: {}%", figures(100.0 * fit.after)),
             "light" => format!("  light_per_m: {value}"),
-            "oxygen demand" => format!("  oxygen_demand: {{ water: {value} }}"),
+            // the bed's beside it, so that the line can stand in the place of one that is there
+            "oxygen demand" => {
+                let bed = learned.knobs.bed_demand_g_m2_day;
+                format!("  oxygen_demand: {{ water: {value}, bed: {bed} }}")
+            }
             other => format!("  {other}: {value}"),
         }
     };
-    std::iter::once("season:".to_owned()).chain(learned.each().into_iter().map(line)).collect()
+    std::iter::once("season:".to_owned())
+        .chain(learned.each().into_iter().filter(|fit| fit.told).map(line))
+        .collect()
 }

@@ -5,6 +5,7 @@ mod calendar;
 mod cold;
 mod first;
 pub(in crate::report) mod learned;
+pub(super) mod needed;
 pub(super) mod price;
 mod rest;
 mod side;
@@ -24,6 +25,7 @@ use super::{labelled, list, wrapped};
 pub use calendar::{gates, moved_words, moves, past, reach};
 pub use cold::{cold, left};
 pub use first::{exhausted, out_of_reach, outside_by, reserve, targets};
+pub use needed::needed;
 pub use price::{asked as priced, lines as prices};
 pub use rest::rest;
 pub use side::{HEADS, MORE_HEADS, Row, columns, meaning, more_columns, side};
@@ -128,7 +130,7 @@ pub fn strategy_words(run: &Run) -> String {
         "hold" => "the setting is held as long as no limit stands against it".to_owned(),
         "best" => "the best mix of the day".to_owned(),
         "thrift" => "release targets that spare cold water".to_owned(),
-        other => format!("gates as {other} says"),
+        other => format!("gates as the {other} says"),
     }
 }
 

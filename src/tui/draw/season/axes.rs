@@ -6,12 +6,12 @@ use chrono::{Datelike, Days};
 use ratatui::layout::Rect;
 use unicode_width::UnicodeWidthStr;
 
-use crate::plot::Scale;
+use crate::plot::{Scale, on_rows};
 use crate::tui::draw::pen::Pen;
 use crate::tui::{Look, Role, Symbols};
 use crate::units::{Dimension, System, Unit};
 
-use super::SeasonPicture;
+use super::{GateThrough, SeasonPicture};
 
 /// Least and most columns left of the plot, the axis counted in.
 const SIDE: (usize, usize) = (13, 18);
@@ -36,6 +36,8 @@ const TOUCHES: f64 = 0.2;
 const MARGIN: f64 = 0.04;
 /// Least rows of curves.
 const CURVE: usize = 3;
+/// Most rows of days outside.
+const OUTSIDE: usize = 2;
 
 /// Rows of a part: the first, and how many.
 pub(super) type Rows = (usize, usize);
@@ -54,10 +56,10 @@ pub(super) struct Frame {
     pub(super) release: Rows,
     pub(super) cold: Option<Rows>,
     pub(super) moves: usize,
-    pub(super) outside: usize,
+    pub(super) outside: Rows,
     pub(super) gates: Rows,
     pub(super) axis: usize,
-    days: usize,
+    pub(super) days: usize,
 }
 
 impl Frame {
@@ -67,13 +69,12 @@ impl Frame {
         if width < LEAST.0 || height < LEAST.1 || picture.days == 0 {
             return None;
         }
-        let names = picture.gates.iter().map(|g| g.name.width() + 2).max().unwrap_or(0);
-        let side = names.clamp(SIDE.0, SIDE.1.min(width / 4).max(SIDE.0));
-        let titles = height >= TALL;
+        let titles = has_titles(area);
         let gates = if titles { picture.gates.len().min(GATES) } else { 0 };
-        // legend, two strips and the axis stand always
+        let outside = picture.outside.len().min(if titles { OUTSIDE } else { 1 });
+        // legend, moves and the axis stand always
         let title = usize::from(titles);
-        let room = height - 4 - gates - title;
+        let room = height - 3 - outside - gates - title;
         let curves = 1 + usize::from(picture.cold.is_some());
         let room = room - if titles { curves } else { 0 };
         let mut release = (room * 35 / 100).max(CURVE);
@@ -82,6 +83,10 @@ impl Frame {
             (release, cold) = (room / 2, 0);
         }
         let water = (1 + title, room - release - cold);
+        let names = names_on_rows(picture, water.1);
+        let names = names.iter().chain(picture.gates.iter().map(|g| &g.name));
+        let names = names.map(|name| name.width() + 1).max().unwrap_or(0);
+        let side = names.clamp(SIDE.0, SIDE.1.min(width / 4).max(SIDE.0));
         let release = (water.0 + water.1 + title, release);
         let below = release.0 + release.1;
         let cold = (cold > 0).then_some((below + title, cold));
@@ -95,8 +100,8 @@ impl Frame {
             release,
             cold,
             moves,
-            outside: moves + 1,
-            gates: (moves + 2, gates),
+            outside: (moves + 1, outside),
+            gates: (moves + 1 + outside, gates),
             axis: height - 1,
             days: picture.days,
         })
@@ -133,15 +138,70 @@ impl Frame {
             free = col + text.len() + 2;
         }
         if let Some(day) = picture.cursor.filter(|d| *d < self.days) {
-            let col = self.side + self.col_of(day);
-            let parts =
-                [Some(self.water), Some(self.release), self.cold, Some((self.moves, 2 + self.gates.1))];
-            for row in parts.into_iter().flatten().flat_map(|(from, rows)| from..from + rows) {
-                pen.fill(col, row, if ascii { "|" } else { "│" }, Role::Strong);
-            }
-            pen.put(col, self.axis, "^", Role::Chosen);
+            pen.put(self.side + self.col_of(day), self.axis, "^", Role::Chosen);
         }
     }
+
+    /// A line down the pictures at the day read, where nothing stands yet.
+    pub(super) fn cursor(&self, picture: &SeasonPicture, pen: &mut Pen, look: Look) {
+        let Some(day) = picture.cursor.filter(|d| *d < self.days) else { return };
+        let line = if look.symbols == Symbols::Ascii { "|" } else { "│" };
+        let strips = (self.moves, 1 + self.outside.1 + self.gates.1);
+        let parts = [Some(self.water), Some(self.release), self.cold, Some(strips)];
+        for row in parts.into_iter().flatten().flat_map(|(from, rows)| from..from + rows) {
+            pen.fill(self.side + self.col_of(day), row, line, Role::Strong);
+        }
+    }
+
+    /// Signs with what they mean from a cell on, as far as there is room.
+    pub(super) fn entries(&self, mut col: usize, row: usize, of: &[(&str, &str, Role)], pen: &mut Pen) {
+        for (glyph, word, role) in of {
+            let wide = word.width() + 4;
+            if col + wide > self.side + self.cols {
+                return;
+            }
+            pen.put(col, row, glyph, *role);
+            pen.put(col + 2, row, word, Role::Quiet);
+            col += wide;
+        }
+    }
+}
+
+/// Whether the parts of a picture have titles.
+pub(super) fn has_titles(area: Rect) -> bool {
+    usize::from(area.height) >= TALL
+}
+
+/// The scale of elevations.
+pub(super) fn elevations(picture: &SeasonPicture) -> Option<Scale> {
+    let (low_m, high_m) = picture.water.elevations_m;
+    Scale::new(low_m, high_m)
+}
+
+/// Row of a value, from the top of so many.
+pub(super) fn row(scale: &Scale, value: f64, rows: usize) -> usize {
+    rows.saturating_sub(1 + scale.cell(value, rows).unwrap_or(0))
+}
+
+/// Value in the middle of a row, counted from the top of so many.
+pub(super) fn middle(scale: &Scale, row: usize, rows: usize) -> f64 {
+    scale.value(1.0 - (row as f64 + 0.5) / rows as f64)
+}
+
+/// Names of the gates on rows of the water: each on its own or one beside it, several together where they must.
+pub(super) fn names_on_rows(picture: &SeasonPicture, rows: usize) -> Vec<String> {
+    let mut out = vec![String::new(); rows];
+    let Some(scale) = elevations(picture) else { return out };
+    let mut gates: Vec<&GateThrough> = picture.gates.iter().collect();
+    gates.sort_by(|a, b| b.elevation_m.total_cmp(&a.elevation_m));
+    let wants: Vec<usize> = gates.iter().map(|g| row(&scale, g.elevation_m, rows)).collect();
+    for (gate, row) in gates.iter().zip(on_rows(&wants, rows)) {
+        if let Some(names) = out.get_mut(row) {
+            let between = if names.is_empty() { "" } else { " " };
+            *names = format!("{names}{between}{}", gate.name);
+        }
+    }
+    out
 }
 
 /// The day that a column shows: the one in its middle.

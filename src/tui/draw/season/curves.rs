@@ -2,115 +2,147 @@
 //!
 //! Figures of the layout are choices.
 
+use unicode_width::UnicodeWidthStr;
+
 use crate::plot::{Dots, Grain, Scale, Stroke};
 use crate::tui::draw::pen::{Pen, cut};
 use crate::tui::{Look, Role, Symbols};
+use crate::units::{System, Unit};
 
-use super::axes::{Frame, Rows, counted, scale, steps};
-use super::{CurvesThrough, LineThrough, SeasonPicture};
+use super::CurvesThrough;
+use super::axes::{Frame, Rows, counted, middle, row, scale, steps};
 
-pub(super) fn draw(
-    picture: &SeasonPicture,
-    curves: &CurvesThrough,
-    (top, rows): Rows,
-    frame: &Frame,
-    pen: &mut Pen,
+/// Curves over one time, and where they lie.
+pub(super) struct Curves<'a> {
+    curves: &'a CurvesThrough,
+    rows: Rows,
+    frame: &'a Frame,
     look: Look,
-) {
-    let unit = picture.system.unit(curves.dimension);
-    let (times, counted) = counted(curves.dimension, picture.system, curves.span.1);
-    let shown = |value: f64| unit.from_si(value) / times;
-    let Some(y) = scale(shown(curves.span.0), shown(curves.span.1)) else { return };
-    let row_of = |value: f64| top + rows - 1 - y.cell(shown(value), rows).unwrap_or(0);
-    let ascii = look.symbols == Symbols::Ascii;
-    if let Some(x) = Scale::new(0.0, picture.days as f64) {
-        for line in &curves.lines {
-            let mut dots = Dots::new(look.symbols.grain(), frame.cols, rows);
-            let point = |(i, v): (usize, &Option<f64>)| (i as f64 + 0.5, v.map_or(f64::NAN, shown));
-            let points: Vec<(f64, f64)> = line.values.iter().enumerate().map(point).collect();
-            dots.curve(0, line.stroke, &points, &x, &y);
-            let cells = (0..rows).flat_map(|row| (0..frame.cols).map(move |col| (col, row)));
-            for (col, row) in cells {
-                let Some(spot) = dots.spot(col, row) else { continue };
-                let glyph = spot.glyph.to_string();
-                let plain = look.symbols.grain() == Grain::Ascii;
-                pen.put(frame.side + col, top + row, if plain { line.mark } else { &glyph }, line.role);
+    /// The values, in the unit and the count shown.
+    y: Scale,
+    unit: Unit,
+    times: f64,
+    counted: String,
+}
+
+impl<'a> Curves<'a> {
+    /// `None` where the values have no scale.
+    pub(super) fn of(
+        system: System,
+        curves: &'a CurvesThrough,
+        rows: Rows,
+        frame: &'a Frame,
+        look: Look,
+    ) -> Option<Self> {
+        let unit = system.unit(curves.dimension);
+        let (times, counted) = counted(curves.dimension, system, curves.span.1);
+        let shown = |value: f64| unit.from_si(value) / times;
+        let y = scale(shown(curves.span.0), shown(curves.span.1))?;
+        Some(Self { curves, rows, frame, look, y, unit, times, counted })
+    }
+
+    fn shown(&self, si: f64) -> f64 {
+        self.unit.from_si(si) / self.times
+    }
+
+    /// The curves with their axis. Where they meet in a cell their dots merge, in the colour of the last.
+    pub(super) fn draw(&self, pen: &mut Pen) {
+        let ((top, rows), grain) = (self.rows, self.look.symbols.grain());
+        let mut dots = Dots::new(grain, self.frame.cols, rows);
+        if let Some(x) = Scale::new(0.0, self.frame.days as f64) {
+            for (i, line) in self.curves.lines.iter().enumerate() {
+                let point =
+                    |(i, v): (usize, &Option<f64>)| (i as f64 + 0.5, v.map_or(f64::NAN, |v| self.shown(v)));
+                let points: Vec<(f64, f64)> = line.values.iter().enumerate().map(point).collect();
+                dots.curve(i, line.stroke, &points, &x, &self.y);
+            }
+        }
+        let cells = (0..rows).flat_map(|row| (0..self.frame.cols).map(move |col| (col, row)));
+        for (col, row) in cells {
+            let Some(spot) = dots.spot(col, row) else { continue };
+            let Some(line) = self.curves.lines.get(spot.curve) else { continue };
+            let glyph = spot.glyph.to_string();
+            let mark = if grain == Grain::Ascii { line.mark } else { &glyph };
+            pen.put(self.frame.side + col, top + row, mark, line.role);
+        }
+        self.side(pen);
+        if self.frame.titles {
+            self.title(pen);
+        }
+    }
+
+    /// The range behind the curves: its sign in the cells they leave, its colour in all of them. A cell is in it where
+    /// its middle is; of a range too narrow for that the cell of its middle.
+    pub(super) fn shade(&self, pen: &mut Pen) {
+        let (top, rows) = self.rows;
+        for col in 0..self.frame.cols {
+            let of = self.curves.shaded.1.get(self.frame.day_of(col)).copied().flatten();
+            let Some([low, high]) = of.map(|range| range.map(|v| self.shown(v))) else { continue };
+            let held = |row: &usize| (low..=high).contains(&middle(&self.y, *row, rows));
+            let mut held: Vec<usize> = (0..rows).filter(held).collect();
+            if held.is_empty() {
+                held.push(row(&self.y, 0.5 * (low + high), rows));
+            }
+            for row in held {
+                let (col, row) = (self.frame.side + col, top + row);
+                pen.fill(col, row, shade(self.look), Role::Reach);
+                pen.behind(col, row, Role::Reach);
             }
         }
     }
-    // behind the curves: a cell holds one or the other
-    for col in 0..frame.cols {
-        let Some([low, high]) = curves.shaded.1.get(frame.day_of(col)).copied().flatten() else { continue };
-        for row in row_of(high)..=row_of(low) {
-            pen.fill(frame.side + col, row, if ascii { ":" } else { "░" }, Role::Quiet);
+
+    /// The axis with its numbers; without titles the name stands over them.
+    fn side(&self, pen: &mut Pen) {
+        let ascii = self.look.symbols == Symbols::Ascii;
+        let (line, tick) = if ascii { ("|", "+") } else { ("│", "┤") };
+        let ((top, rows), end) = (self.rows, self.frame.side - 1);
+        (top..top + rows).for_each(|row| pen.put(end, row, line, Role::Quiet));
+        let marks = self.y.marks(steps(rows));
+        let decimals = usize::from(marks.decimals);
+        let wide = marks.values.iter().map(|v| format!("{v:.decimals$}").len() + 1).max().unwrap_or(0);
+        let mut numbered = Vec::new();
+        for value in marks.values {
+            let row = top + row(&self.y, value, rows);
+            pen.put_before(end, row, &format!("{value:.decimals$} "), Role::Quiet);
+            pen.put(end, row, tick, Role::Quiet);
+            numbered.push(row);
+        }
+        if !self.frame.titles {
+            let room = end.saturating_sub(wide + 1);
+            pen.put(0, top, &cut(&self.curves.name, room), Role::Strong);
+            // the unit where no number needs the room
+            if let Some(free) = (top + 1..top + rows).find(|row| !numbered.contains(row)) {
+                pen.put(0, free, &cut(&self.counted, end), Role::Quiet);
+            }
         }
     }
-    side(curves, &counted, (top, rows), frame, pen, (&y, ascii));
-    if frame.titles {
-        title(curves, &counted, top - 1, frame, pen, ascii);
+
+    /// The name, and what each mark means.
+    fn title(&self, pen: &mut Pen) {
+        let (row, curves) = (self.rows.0 - 1, self.curves);
+        let text = format!("{}, {}", curves.name, self.counted);
+        pen.put(0, row, &text, Role::Strong);
+        let lines = curves.lines.iter().rev().filter(|line| !line.name.is_empty());
+        let mut entries: Vec<(&str, &str, Role)> =
+            lines.map(|of| (sign(of.stroke, of.mark, self.look), of.name.as_str(), of.role)).collect();
+        if curves.shaded.1.iter().any(Option::is_some) {
+            entries.push((shade(self.look), &curves.shaded.0, Role::Reach));
+        }
+        self.frame.entries(text.width() + 3, row, &entries, pen);
     }
 }
 
-/// The axis with its numbers; without titles the name stands over them.
-fn side(
-    curves: &CurvesThrough,
-    counted: &str,
-    (top, rows): Rows,
-    frame: &Frame,
-    pen: &mut Pen,
-    (y, ascii): (&Scale, bool),
-) {
-    let (line, tick) = if ascii { ("|", "+") } else { ("│", "┤") };
-    let end = frame.side - 1;
-    (top..top + rows).for_each(|row| pen.put(end, row, line, Role::Quiet));
-    let marks = y.marks(steps(rows));
-    let decimals = usize::from(marks.decimals);
-    let wide = marks.values.iter().map(|v| format!("{v:.decimals$}").len() + 1).max().unwrap_or(0);
-    let mut numbered = Vec::new();
-    for value in marks.values {
-        let row = top + rows - 1 - y.cell(value, rows).unwrap_or(0);
-        pen.put_before(end, row, &format!("{value:.decimals$} "), Role::Quiet);
-        pen.put(end, row, tick, Role::Quiet);
-        numbered.push(row);
-    }
-    if !frame.titles {
-        let room = end.saturating_sub(wide + 1);
-        pen.put(0, top, &cut(&curves.name, room), Role::Strong);
-        // the unit where no number needs the room
-        if let Some(free) = (top + 1..top + rows).find(|row| !numbered.contains(row)) {
-            pen.put(0, free, &cut(counted, end), Role::Quiet);
-        }
+/// What a curve looks like; its plain character where there are no others.
+pub fn sign(stroke: Stroke, mark: &'static str, look: Look) -> &'static str {
+    match (look.symbols, stroke) {
+        (Symbols::Ascii, _) => mark,
+        (_, Stroke::Heavy | Stroke::Broad) => "━",
+        (_, Stroke::Dotted) => "┄",
+        (_, Stroke::Thin) => "─",
     }
 }
 
-/// The name, and what each mark means.
-fn title(curves: &CurvesThrough, counted: &str, row: usize, frame: &Frame, pen: &mut Pen, ascii: bool) {
-    let text = format!("{}, {counted}", curves.name);
-    pen.put(0, row, &text, Role::Strong);
-    let mut col = text.chars().count() + 3;
-    let shade = if ascii { ":" } else { "░" };
-    let mut entries: Vec<(&str, &str, Role)> =
-        curves.lines.iter().rev().map(|l| (sign(l, ascii), l.name.as_str(), l.role)).collect();
-    if curves.shaded.1.iter().any(Option::is_some) {
-        entries.push((shade, &curves.shaded.0, Role::Quiet));
-    }
-    for (glyph, word, role) in entries.into_iter().filter(|e| !e.1.is_empty()) {
-        let wide = word.chars().count() + 4;
-        if col + wide > frame.side + frame.cols {
-            return;
-        }
-        pen.put(col, row, glyph, role);
-        pen.put(col + 2, row, word, Role::Quiet);
-        col += wide;
-    }
-}
-
-/// What a curve looks like.
-fn sign(line: &LineThrough, ascii: bool) -> &'static str {
-    match (ascii, line.stroke) {
-        (true, _) => line.mark,
-        (false, Stroke::Heavy) => "━",
-        (false, Stroke::Dotted) => "┄",
-        (false, Stroke::Thin) => "─",
-    }
+/// What the range behind curves looks like.
+pub fn shade(look: Look) -> &'static str {
+    if look.symbols == Symbols::Ascii { ":" } else { "░" }
 }

@@ -16,6 +16,9 @@ use crate::tui::{Look, Role};
 use crate::units::{Dimension, System};
 
 use super::pen::Pen;
+use curves::Curves;
+
+pub use curves::{shade, sign};
 
 /// What the picture shows. Days count from 0.
 #[derive(Debug, Clone, PartialEq)]
@@ -38,8 +41,8 @@ pub struct SeasonPicture {
     pub gates: Vec<GateThrough>,
     /// Days on which gates move, how many, and whether they had to.
     pub moves: Vec<(usize, usize, bool)>,
-    /// Days outside what is asked.
-    pub outside: Vec<usize>,
+    /// Names of what is asked, each with the days outside it; the first where there is room for one.
+    pub outside: Vec<(String, Vec<usize>)>,
 }
 
 /// The water of the pool through time.
@@ -131,10 +134,11 @@ pub enum GateDay {
 /// cold, kaf 100|**
 ///              |  ********
 /// moves         1   2      !  1   (! where a limit forces it)
-/// outside              !!!!
+/// outside C            !!!!
 ///               |Jul 14  |Aug    |Sep  ^
 /// ```
-/// Taller pictures have titles with what each mark means, and a row for every gate.
+/// Taller pictures have titles with what each mark means, every row of days outside, and a row for every gate. The
+/// cells of marks keep the colour of the water, those of curves the colour of the range behind them.
 pub fn season(picture: &SeasonPicture, area: Rect, buf: &mut Buffer, look: Look) {
     let mut pen = Pen::new(buf, area, look);
     let Some(frame) = axes::Frame::of(picture, area) else {
@@ -142,12 +146,21 @@ pub fn season(picture: &SeasonPicture, area: Rect, buf: &mut Buffer, look: Look)
         return;
     };
     water::draw(picture, &frame, &mut pen, look);
-    curves::draw(picture, &picture.release, frame.release, &frame, &mut pen, look);
-    if let (Some(cold), Some(rows)) = (&picture.cold, frame.cold) {
-        curves::draw(picture, cold, rows, &frame, &mut pen, look);
-    }
+    let cold = picture.cold.as_ref().zip(frame.cold);
+    let curves = [Some((&picture.release, frame.release)), cold].into_iter().flatten();
+    let curves: Vec<Curves> =
+        curves.filter_map(|(of, rows)| Curves::of(picture.system, of, rows, &frame, look)).collect();
+    curves.iter().for_each(|curves| curves.draw(&mut pen));
     strips::draw(picture, &frame, &mut pen, look);
     frame.time(picture, &mut pen, look);
+    frame.cursor(picture, &mut pen, look);
+    // behind everything
+    curves.iter().for_each(|curves| curves.shade(&mut pen));
+}
+
+/// Signs over the water with their meaning, where a picture in an area has no row for them.
+pub fn untold(area: Rect, look: Look) -> Vec<(&'static str, &'static str)> {
+    if axes::has_titles(area) { Vec::new() } else { water::meanings(look).to_vec() }
 }
 
 /// The day under a cell of the buffer, for the mouse.

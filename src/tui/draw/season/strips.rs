@@ -13,7 +13,6 @@ pub(super) fn draw(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: 
     let ascii = look.symbols == Symbols::Ascii;
     let end = frame.side - 1;
     pen.put(0, frame.moves, "moves", Role::Strong);
-    pen.put(0, frame.outside, "outside", Role::Strong);
     for col in 0..frame.cols {
         let here = |day: &usize| frame.col_of(*day) == col;
         let moved: usize = picture.moves.iter().filter(|m| here(&m.0)).map(|m| m.1).sum();
@@ -26,8 +25,10 @@ pub(super) fn draw(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: 
         };
         pen.put(frame.side + col, frame.moves, &text, if forced { Role::Outside } else { Role::Plain });
     }
-    for day in &picture.outside {
-        pen.put(frame.side + frame.col_of(*day), frame.outside, "!", Role::Outside);
+    let (top, rows) = frame.outside;
+    for (row, (name, days)) in (top..top + rows).zip(&picture.outside) {
+        pen.put(0, row, &cut(name, end), Role::Strong);
+        days.iter().for_each(|day| pen.put(frame.side + frame.col_of(*day), row, "!", Role::Outside));
     }
     let (top, rows) = frame.gates;
     for (row, gate) in (top..top + rows).zip(&picture.gates) {

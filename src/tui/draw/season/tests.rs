@@ -36,8 +36,8 @@ pub(crate) fn picture(days: usize) -> SeasonPicture {
             span: (6.0, 20.0),
             shaded: ("attainable".into(), (0..days).map(|_| Some([7.0, 19.0])).collect()),
             lines: vec![
-                line("asked", Role::Range, Stroke::Dotted, "-", &|_| Some(13.0)),
-                line("release", Role::Temperature, Stroke::Heavy, "*", &|d| Some(9.0 + 8.0 * share(d))),
+                line("asked", Role::Range, Stroke::Thin, "-", &|_| Some(13.0)),
+                line("release", Role::Temperature, Stroke::Broad, "*", &|d| Some(9.0 + 8.0 * share(d))),
             ],
         },
         cold: Some(CurvesThrough {
@@ -45,21 +45,30 @@ pub(crate) fn picture(days: usize) -> SeasonPicture {
             dimension: Dimension::Volume,
             span: (0.0, 5e7),
             shaded: (String::new(), Vec::new()),
-            lines: vec![line("usable", Role::Cold, Stroke::Heavy, "*", &|d| Some(5e7 * (1.0 - share(d))))],
+            lines: vec![line("usable", Role::Cold, Stroke::Broad, "*", &|d| Some(5e7 * (1.0 - share(d))))],
         }),
         gates: vec![
             GateThrough { name: "Upper".into(), elevation_m: 30.0, days: (0..days).map(upper).collect() },
             GateThrough { name: "Sluice".into(), elevation_m: 4.0, days: vec![GateDay::Shut; days] },
         ],
         moves: vec![(0, 2, false), (days / 2, 1, true)],
-        outside: (days * 2 / 3..days).collect(),
+        outside: vec![
+            ("outside C".into(), (days * 2 / 3..days).collect()),
+            ("outside O2".into(), (0..days / 5).collect()),
+        ],
     }
 }
 
-fn drawn(picture: &SeasonPicture, width: u16, height: u16) -> Vec<String> {
+fn cells(picture: &SeasonPicture, (width, height): (u16, u16), look: Look) -> Buffer {
     let area = Rect::new(0, 0, width, height);
     let mut buf = Buffer::empty(area);
-    season(picture, area, &mut buf, Look { symbols: Symbols::Ascii, theme: Theme::Mono });
+    season(picture, area, &mut buf, look);
+    buf
+}
+
+fn drawn(picture: &SeasonPicture, width: u16, height: u16) -> Vec<String> {
+    let look = Look { symbols: Symbols::Ascii, theme: Theme::Mono };
+    let buf = cells(picture, (width, height), look);
     let line = |y| (0..width).map(|x| buf[(x, y)].symbol().to_owned()).collect::<String>();
     (0..height).map(|y| line(y).trim_end().to_owned()).collect()
 }
@@ -83,10 +92,83 @@ fn scenario_a_pool_that_falls_and_loses_its_upper_gate() {
         assert!(deep.contains("@@@"), "{all}");
         let strip = |word: &str| lines.iter().find(|l| l.starts_with(word)).unwrap();
         assert!(strip("moves").contains('2') && strip("moves").contains('!'), "{all}");
-        assert!(strip("outside").ends_with('!'), "{all}");
+        assert!(strip("outside C").ends_with('!'), "{all}");
+        assert_eq!(all.contains("outside O2"), height > 20, "{all}");
         let axis = lines.last().unwrap();
         assert!(axis.contains("|Jul 14") && axis.contains("|Sep") && axis.contains('^'), "{all}");
         assert!(all.contains("cold, hm3") || height < 20, "{all}");
+    }
+}
+
+/// Rows of a column of the release that carry the colour of the range, from the top.
+fn reached(buf: &Buffer, look: Look, col: u16, (top, rows): (usize, usize)) -> Vec<usize> {
+    let colour = look.style(Role::Reach).bg.unwrap();
+    let row = |row: &usize| buf[(col, u16::try_from(top + row).unwrap())].bg == colour;
+    (0..rows).filter(row).collect()
+}
+
+#[test]
+fn scenario_the_range_within_reach_is_one_band_under_the_curves() {
+    for (size, symbols) in
+        [((54, 17), Symbols::Braille), ((80, 34), Symbols::Braille), ((80, 34), Symbols::Ascii)]
+    {
+        let (picture, look) = (picture(120), Look { symbols, theme: Theme::Palette });
+        let (buf, area) = (cells(&picture, size, look), Rect::new(0, 0, size.0, size.1));
+        let frame = axes::Frame::of(&picture, area).unwrap();
+        let (top, rows) = frame.release;
+        let scale = axes::scale(6.0, 20.0).unwrap();
+        for col in 0..frame.cols {
+            let col = u16::try_from(frame.side + col).unwrap();
+            let held = |row: &usize| (7.0..=19.0).contains(&axes::middle(&scale, *row, rows));
+            let want: Vec<usize> = (0..rows).filter(held).collect();
+            assert!(want.len() > 2 && reached(&buf, look, col, frame.release) == want, "{col} {size:?}");
+        }
+        // what comes and what is asked are unbroken above it
+        let role = |role: Role| look.style(role).fg;
+        for col in 0..frame.cols {
+            let x = u16::try_from(frame.side + col).unwrap();
+            let fg = |role_of: Role| {
+                (top..top + rows).any(|y| buf[(x, u16::try_from(y).unwrap())].fg == role(role_of).unwrap())
+            };
+            assert!(fg(Role::Temperature), "{col} {size:?}");
+        }
+    }
+}
+
+#[test]
+fn scenario_a_mark_leaves_the_water_to_be_seen() {
+    let (picture, look) = (picture(120), Look { symbols: Symbols::Braille, theme: Theme::Palette });
+    let buf = cells(&picture, (80, 34), look);
+    let marks = |sign: &str| buf.content.iter().filter(|c| c.symbol() == sign).cloned().collect::<Vec<_>>();
+    let bands: Vec<_> = (0..6).map(|band| look.style(Role::Band(band)).bg).collect();
+    for sign in ["━", "╌", "~"] {
+        let over = marks(sign).into_iter().filter(|c| bands.contains(&Some(c.bg))).count();
+        assert!(over > 5, "{sign}: {over} of {}", marks(sign).len());
+    }
+    // four columns from one mark of a limit to the next
+    let limits = marks("╌").len();
+    assert!(limits < 40, "{limits}");
+}
+
+#[test]
+fn law_zones_that_overlap_have_one_lower_and_one_upper_limit() {
+    let joined = |zones: &[[f64; 2]]| water::joined(zones.to_vec());
+    assert_eq!(joined(&[[20.0, 30.0], [5.0, 12.0], [25.0, 40.0]]), [[5.0, 12.0], [20.0, 40.0]]);
+    assert_eq!(joined(&[[0.0, 40.0], [10.0, 20.0]]), [[0.0, 40.0]]);
+    assert_eq!(joined(&[]), Vec::<[f64; 2]>::new());
+}
+
+#[test]
+fn scenario_gates_that_share_a_row_are_all_named() {
+    let mut picture = picture(120);
+    for (name, elevation_m) in [("Spillway", 31.0), ("N1 S1", 30.5)] {
+        let days = vec![GateDay::Shut; 120];
+        picture.gates.push(GateThrough { name: name.into(), elevation_m, days });
+    }
+    let all = drawn(&picture, 80, 34).join("\n");
+    assert!(!all.contains("+1"), "{all}");
+    for name in ["Spillway", "N1 S1", "Upper"] {
+        assert!(all.lines().any(|l| l.contains(name) && l.contains('>')), "{name}:\n{all}");
     }
 }
 

@@ -1,22 +1,23 @@
-//! The water of the pool through time: bands from dense (cold) to light (warm), gates, open zones, surface, thermocline.
+//! The water of the pool through time: bands from dense (cold) to light (warm), gates, the limits of what is drawn,
+//! surface, thermocline.
 //!
 //! Figures of the layout are choices.
 
 use unicode_width::UnicodeWidthStr;
 
-use crate::plot::{Scale, on_rows};
+use crate::plot::Scale;
 use crate::tui::draw::pen::{Pen, cut};
 use crate::tui::{Look, Role, Symbols};
 use crate::units::Dimension;
 
-use super::axes::{BANDS, Frame, edges};
+use super::axes::{BANDS, Frame, edges, elevations, names_on_rows};
 use super::{GateDay, GateThrough, SeasonPicture, WaterDay};
 
 /// Characters of the bands, the lowest first.
 const DENSE: [&str; BANDS] = ["█", "▓", "▒", "░", ":", "·"];
 const PLAIN: [&str; BANDS] = ["@", "#", "%", "o", ":", "."];
-/// Columns from one mark of a zone to the next.
-const GAPS: usize = 2;
+/// Columns from one mark of a limit to the next: the water is to be seen between them.
+const GAPS: usize = 4;
 /// Water of which nothing is known.
 const UNKNOWN: &str = "?";
 
@@ -26,15 +27,27 @@ struct Marks {
     surface: &'static str,
     thermocline: &'static str,
     open: &'static str,
-    zone: &'static str,
+    limit: &'static str,
 }
 
 fn marks(look: Look) -> Marks {
     if look.symbols == Symbols::Ascii {
-        Marks { fill: PLAIN, surface: "_", thermocline: "~", open: "=", zone: "-" }
+        Marks { fill: PLAIN, surface: "_", thermocline: "~", open: "=", limit: "-" }
     } else {
-        Marks { fill: DENSE, surface: "▁", thermocline: "~", open: "━", zone: "╌" }
+        Marks { fill: DENSE, surface: "▁", thermocline: "~", open: "━", limit: "╌" }
     }
+}
+
+/// What each mark over the water means.
+pub(super) fn meanings(look: Look) -> [(&'static str, &'static str); 5] {
+    let marks = marks(look);
+    [
+        (marks.open, "open"),
+        (marks.limit, "zone limit"),
+        ("x", "lost"),
+        ("+", "usable again"),
+        (marks.thermocline, "thermocline"),
+    ]
 }
 
 /// The band of a value in the unit shown, from 0: how many edges it does not lie under.
@@ -50,47 +63,63 @@ fn at(day: &WaterDay, bed_m: f64, elevation_m: f64) -> Option<(f64, Option<f64>)
     day.layers.iter().find(|layer| elevation_m <= layer.0).copied()
 }
 
+/// A cell of the water.
+#[derive(Clone, Copy, Default)]
+struct Cell {
+    /// Its character, if any, and what it means.
+    drawn: Option<(&'static str, Role)>,
+    /// The band of the water in it.
+    band: Option<usize>,
+}
+
 /// The cells of the water: what is put last is drawn.
 struct Cells<'a> {
     frame: &'a Frame,
     scale: Scale,
-    put: Vec<Option<(&'static str, Role)>>,
+    cells: Vec<Cell>,
 }
 
 impl<'a> Cells<'a> {
     fn new(frame: &'a Frame, scale: Scale) -> Self {
-        Self { frame, scale, put: vec![None; frame.cols * frame.water.1] }
+        Self { frame, scale, cells: vec![Cell::default(); frame.cols * frame.water.1] }
     }
 
     /// Row of an elevation, from the top of the water's part.
     fn row(&self, elevation_m: f64) -> usize {
-        let rows = self.frame.water.1;
-        rows - 1 - self.scale.cell(elevation_m, rows).unwrap_or(0)
+        super::axes::row(&self.scale, elevation_m, self.frame.water.1)
     }
 
     /// Elevation of the middle of a row, m.
     fn middle_m(&self, row: usize) -> f64 {
-        self.scale.value(1.0 - (row as f64 + 0.5) / self.frame.water.1 as f64)
+        super::axes::middle(&self.scale, row, self.frame.water.1)
+    }
+
+    fn cell(&mut self, col: usize, row: usize) -> Option<&mut Cell> {
+        self.cells.get_mut(row * self.frame.cols + col)
     }
 
     fn put(&mut self, col: usize, row: usize, glyph: &'static str, role: Role) {
-        if let Some(cell) = self.put.get_mut(row * self.frame.cols + col) {
-            *cell = Some((glyph, role));
+        if let Some(cell) = self.cell(col, row) {
+            cell.drawn = Some((glyph, role));
         }
     }
 
-    /// A mark where no water is.
-    fn over(&mut self, col: usize, row: usize, glyph: &'static str, role: Role) {
-        if self.put.get(row * self.frame.cols + col).is_some_and(Option::is_none) {
-            self.put(col, row, glyph, role);
+    /// A mark over the water, which is seen behind it.
+    fn mark(&mut self, col: usize, row: usize, glyph: &'static str) {
+        if let Some(cell) = self.cell(col, row) {
+            let role = if cell.band.is_some() { Role::Mark } else { Role::Strong };
+            cell.drawn = Some((glyph, role));
         }
     }
 
     fn draw(&self, pen: &mut Pen) {
-        for (i, cell) in self.put.iter().enumerate() {
-            if let Some((glyph, role)) = cell {
-                let (row, col) = (i / self.frame.cols, i % self.frame.cols);
-                pen.put(self.frame.side + col, self.frame.water.0 + row, glyph, *role);
+        for (i, cell) in self.cells.iter().enumerate() {
+            let Some((glyph, role)) = cell.drawn else { continue };
+            let (row, col) = (i / self.frame.cols, i % self.frame.cols);
+            let (col, row) = (self.frame.side + col, self.frame.water.0 + row);
+            pen.put(col, row, glyph, role);
+            if let (Role::Mark, Some(band)) = (role, cell.band) {
+                pen.behind(col, row, Role::Band(band));
             }
         }
     }
@@ -98,7 +127,7 @@ impl<'a> Cells<'a> {
 
 pub(super) fn draw(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: Look) {
     let water = &picture.water;
-    let Some(scale) = Scale::new(water.elevations_m.0, water.elevations_m.1) else { return };
+    let Some(scale) = elevations(picture) else { return };
     let marks = marks(look);
     let edges = edges(water.span, water.threshold, water.dimension, picture.system);
     let mut cells = Cells::new(frame, scale);
@@ -107,17 +136,19 @@ pub(super) fn draw(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: 
             column(picture, day, col, &edges, &marks, &mut cells);
         }
     }
-    picture.gates.iter().for_each(|gate| zone(gate, &marks, &mut cells));
+    for col in (0..frame.cols).step_by(GAPS) {
+        limits(picture, col, &marks, &mut cells);
+    }
     for col in 0..frame.cols {
         let steepest_m = water.days.get(frame.day_of(col)).and_then(|day| day.thermocline_m);
         if let Some(elevation_m) = steepest_m {
-            cells.put(col, cells.row(elevation_m), marks.thermocline, Role::Strong);
+            cells.mark(col, cells.row(elevation_m), marks.thermocline);
         }
     }
     picture.gates.iter().for_each(|gate| open(gate, &marks, &mut cells));
     cells.draw(pen);
     side(picture, &cells, pen, look);
-    legend(picture, frame, pen, &marks, &edges);
+    legend(picture, frame, pen, look, &edges);
 }
 
 /// The water of a day, and the line of its surface over it.
@@ -134,29 +165,44 @@ fn column(
         // a cell shows the water in its middle
         let layer = at(day, picture.water.elevations_m.0, cells.middle_m(row));
         let Some((_, value)) = layer else { continue };
-        let (glyph, role) = value.map_or((UNKNOWN, Role::Quiet), |v| {
-            let band = band(edges, unit.from_si(v)).min(BANDS - 1);
-            (marks.fill[band], Role::Band(band))
-        });
-        cells.put(col, row, glyph, role);
+        let band = value.map(|v| band(edges, unit.from_si(v)).min(BANDS - 1));
+        if let Some(cell) = cells.cell(col, row) {
+            let drawn = band.map(|band| (marks.fill[band], Role::Band(band)));
+            *cell = Cell { drawn: drawn.or(Some((UNKNOWN, Role::Quiet))), band };
+        }
     }
     if let Some((surface_m, _)) = day.layers.last() {
         let row = cells.row(*surface_m);
         let row = if cells.middle_m(row) <= *surface_m { row.checked_sub(1) } else { Some(row) };
         if let Some(row) = row {
-            cells.over(col, row, marks.surface, Role::Plain);
+            cells.put(col, row, marks.surface, Role::Plain);
         }
     }
 }
 
-/// The limits of the zone of an open gate, with gaps through which the water is seen.
-fn zone(gate: &GateThrough, marks: &Marks, cells: &mut Cells) {
-    for col in (0..cells.frame.cols).step_by(GAPS) {
-        let Some(GateDay::Open(Some(zone))) = gate.days.get(cells.frame.day_of(col)) else { continue };
-        for limit_m in zone {
-            cells.put(col, cells.row(*limit_m), marks.zone, Role::Zone);
+/// The limits of what the open gates draw on the day of a column: zones that overlap are one.
+fn limits(picture: &SeasonPicture, col: usize, marks: &Marks, cells: &mut Cells) {
+    let day = cells.frame.day_of(col);
+    let zones = picture.gates.iter().filter_map(|gate| match gate.days.get(day) {
+        Some(GateDay::Open(zone)) => *zone,
+        _ => None,
+    });
+    for limit_m in joined(zones.collect()).into_iter().flatten() {
+        cells.mark(col, cells.row(limit_m), marks.limit);
+    }
+}
+
+/// Stretches with those that overlap made one, from the lowest.
+pub(super) fn joined(mut zones: Vec<[f64; 2]>) -> Vec<[f64; 2]> {
+    zones.sort_by(|a, b| a[0].total_cmp(&b[0]));
+    let mut out: Vec<[f64; 2]> = Vec::new();
+    for [low, high] in zones {
+        match out.last_mut().filter(|last| low <= last[1]) {
+            Some(last) => last[1] = last[1].max(high),
+            None => out.push([low, high]),
         }
     }
+    out
 }
 
 /// An open gate, and where it is lost and comes back.
@@ -164,7 +210,7 @@ fn open(gate: &GateThrough, marks: &Marks, cells: &mut Cells) {
     let row = cells.row(gate.elevation_m);
     for col in 0..cells.frame.cols {
         if let Some(GateDay::Open(_)) = gate.days.get(cells.frame.day_of(col)) {
-            cells.put(col, row, marks.open, Role::Strong);
+            cells.mark(col, row, marks.open);
         }
     }
     for (day, lost) in turns(&gate.days) {
@@ -189,44 +235,32 @@ fn side(picture: &SeasonPicture, cells: &Cells, pen: &mut Pen, look: Look) {
     let (line, tick) = if look.symbols == Symbols::Ascii { ("|", ">") } else { ("│", "┤") };
     let end = cells.frame.side - 1;
     (top..top + rows).for_each(|row| pen.put(end, row, line, Role::Quiet));
-    let mut gates: Vec<&GateThrough> = picture.gates.iter().collect();
-    gates.sort_by(|a, b| b.elevation_m.total_cmp(&a.elevation_m));
-    let wants: Vec<usize> = gates.iter().map(|g| cells.row(g.elevation_m)).collect();
-    let mut names: Vec<Vec<&str>> = vec![Vec::new(); rows];
-    for ((gate, row), own) in gates.iter().zip(on_rows(&wants, rows)).zip(&wants) {
-        if let Some(names) = names.get_mut(row) {
-            names.push(&gate.name);
-        }
-        pen.put(end, top + own, tick, Role::Quiet);
+    for gate in &picture.gates {
+        pen.put(end, top + cells.row(gate.elevation_m), tick, Role::Quiet);
     }
     let unit = picture.system.unit(Dimension::Length);
     let mut numbered = false;
-    for (row, names) in names.iter().enumerate() {
+    for (row, names) in names_on_rows(picture, rows).into_iter().enumerate() {
         // every second row without a gate is enough
         numbered = names.is_empty() && !numbered;
-        let text = match names[..] {
-            [] if numbered => format!("{:.0} ", unit.from_si(cells.middle_m(row))),
-            [] => continue,
-            [name] => name.to_owned(),
-            [name, ..] if names.join(" ").width() > end => {
-                let more = format!("+{}", names.len() - 1);
-                format!("{}{more}", cut(name, end.saturating_sub(more.len() + 1)))
-            }
-            _ => names.join(" "),
+        let text = match names.is_empty() {
+            true if numbered => format!("{:.0} ", unit.from_si(cells.middle_m(row))),
+            true => continue,
+            false => names,
         };
         let role = if numbered { Role::Quiet } else { Role::Plain };
         pen.put_before(end, top + row, &cut(&text, end), role);
     }
 }
 
-/// The bands with their values, and what the marks mean as far as there is room: after them, or in a row of its own.
-fn legend(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, marks: &Marks, edges: &[f64]) {
+/// The bands with their values; over them, where there is a row for it, what the marks mean.
+fn legend(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: Look, edges: &[f64]) {
     let unit = picture.system.unit(picture.water.dimension);
     // a threshold may not be round
     let edge = |v: f64| if (v - v.round()).abs() < 0.05 { format!("{v:.0}") } else { format!("{v:.1}") };
     let wide = if frame.titles { 2 } else { 1 };
     let (mut col, mut end) = (0, 0);
-    for (i, glyph) in marks.fill.iter().enumerate().take(edges.len() + 1) {
+    for (i, glyph) in marks(look).fill.iter().enumerate().take(edges.len() + 1) {
         let low = i.checked_sub(1).and_then(|i| edges.get(i));
         let text = match (low, edges.get(i)) {
             (Some(low), Some(high)) => format!("{}-{}", edge(*low), edge(*high)),
@@ -240,27 +274,10 @@ fn legend(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, marks: &Marks, 
         end = col - wide;
     }
     pen.put(end + 1, frame.legend, unit.symbol(), Role::Quiet);
-    col = end + unit.symbol().width() + 3;
-    if frame.legend > 0 {
-        let length = picture.system.unit(Dimension::Length);
-        let title = format!("pool, {}", length.symbol());
+    if frame.titles {
+        let title = format!("pool, {}", picture.system.unit(Dimension::Length).symbol());
         pen.put(0, 0, &title, Role::Strong);
-        col = title.width() + 3;
-    }
-    let meanings = [
-        (marks.thermocline, "thermocline"),
-        (marks.open, "open"),
-        (marks.zone, "its zone"),
-        ("x", "lost"),
-        ("+", "usable again"),
-    ];
-    for (glyph, word) in meanings {
-        let wide = word.len() + 4;
-        if col + wide > frame.side + frame.cols {
-            return;
-        }
-        pen.put(col, 0, glyph, Role::Strong);
-        pen.put(col + 2, 0, word, Role::Quiet);
-        col += wide;
+        let entries = meanings(look).map(|(glyph, word)| (glyph, word, Role::Strong));
+        frame.entries(title.width() + 3, 0, &entries, pen);
     }
 }

@@ -14,7 +14,7 @@ fn settle(model: &mut Model, effects: Vec<Effect>) -> Vec<Work> {
     let (mut left, mut ranked) = (effects, Vec::new());
     while let Some(effect) = left.pop() {
         match effect {
-            Effect::Ask(_, work) if work.lane() == Lane::Long => ranked.push(work),
+            Effect::Ask(_, work) if work.lane() == Lane::Long => ranked.push(*work),
             Effect::Ask(generation, work) => {
                 let lane = work.lane();
                 let done = work.perform(&|_| ControlFlow::Continue(()));

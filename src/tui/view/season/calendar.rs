@@ -1,6 +1,6 @@
 //! What has a date: gates, moves, what is within reach, cold water, and what else comes of the season.
 
-use crate::report::text::season::{cold, exhausted, gates, moves, reach, reserve, rest, targets};
+use crate::report::text::season::{cold, exhausted, gates, moves, needed, reach, reserve, rest, targets};
 use crate::tui::look::Role;
 
 use super::super::scroll::{Lines, say};
@@ -11,7 +11,12 @@ pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
     let context = &ahead.context;
     let mut out = Lines::new();
     say(&mut out, "Gates and moves by date; g or Esc goes back.", width, 2, Role::Quiet);
+    let day = screen.day().and_then(|i| run.run.days.get(i));
+    let left = day.and_then(|day| screen.session.left_on(day.date));
+    let needed = left.map_or_else(Vec::new, |left| needed(&left.context, &left.answer, system));
+    let on = day.map_or_else(String::new, |day| format!("Cold water needed on {}", day.date));
     let parts = [
+        (on.as_str(), needed),
         ("Gates", gates(context, run, system)),
         ("Moves", moves(context, run, system)),
         ("Targets", targets(context, run, system)),

@@ -11,6 +11,7 @@
 
 mod beside;
 mod calendar;
+mod left;
 mod picture;
 mod readout;
 
@@ -30,7 +31,7 @@ use super::scroll::{self, Lines};
 use super::write::{cut, put, wrapped};
 
 /// Columns of the readout, and from which width on it has more (choice).
-const READOUT: u16 = 28;
+const READOUT: u16 = 31;
 const READOUT_WIDE: u16 = 40;
 const WIDE: u16 = 100;
 
@@ -120,7 +121,10 @@ pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffe
 fn scrolling(screen: &Screen, parts: &Parts) -> (Lines, Rect) {
     let width = |area: Rect| usize::from(area.width);
     match screen.session.season.page {
-        SeasonPage::Pictures => (readout::lines(screen, width(parts.readout)), parts.readout),
+        SeasonPage::Pictures => {
+            let pictures = Some((parts.pictures, screen.model.look));
+            (readout::lines(screen, width(parts.readout), pictures), parts.readout)
+        }
         SeasonPage::Beside => (beside::lines(screen, width(parts.page)), parts.page),
         SeasonPage::Calendar => (calendar::lines(screen, width(parts.page)), parts.page),
     }
@@ -147,7 +151,7 @@ pub(super) fn in_short(model: &Model, session: &Session, width: usize) -> Lines 
     let Some(screen) = screen(model, session) else { return without(model, session, width) };
     let mut out = Lines::new();
     scroll::say(&mut out, &screen.heading(), width, 2, Role::Strong);
-    out.extend(readout::lines(&screen, width));
+    out.extend(readout::lines(&screen, width, None));
     out
 }
 

@@ -27,7 +27,6 @@ pub(super) fn picture(screen: &Screen) -> Option<SeasonPicture> {
         .calendar
         .iter()
         .filter_map(|on| Some((day_of(on.date)?, on.moved.len(), on.forced.is_some())));
-    let outside = run.run.days.iter().map(|d| d.date).enumerate();
     Some(SeasonPicture {
         system: screen.model.system(),
         first,
@@ -38,7 +37,7 @@ pub(super) fn picture(screen: &Screen) -> Option<SeasonPicture> {
         cold: cold(screen),
         gates: gates(screen),
         moves: moves.collect(),
-        outside: outside.filter(|day| screen.marks(day.1).any(|m| m.1.outside())).map(|day| day.0).collect(),
+        outside: outside(screen),
     })
 }
 
@@ -50,10 +49,7 @@ impl<'a> Screen<'a> {
 
     /// The day read, from 0.
     pub(super) fn day(&self) -> Option<usize> {
-        let days = &self.shown.run.run.days;
-        let last = days.len().checked_sub(1)?;
-        let of = |day: NaiveDate| days.iter().position(|d| d.date >= day).unwrap_or(last);
-        Some(self.session.season.day.map_or(0, of))
+        self.session.day_read()
     }
 
     /// The point looked at; `None` for the dam.
@@ -77,6 +73,11 @@ impl<'a> Screen<'a> {
             (Some(p), false) => day.points.as_ref()?.get(p).map(|f| f.mean_c),
             (Some(p), true) => day.points.as_ref()?.get(p)?.oxygen_mean_mg_l,
         }
+    }
+
+    /// How that is coloured.
+    pub(super) fn role(&self) -> Role {
+        if self.session.season.oxygen { Role::Oxygen } else { Role::Temperature }
     }
 
     /// The hard rules there, each with how it came out.
@@ -110,15 +111,38 @@ impl<'a> Screen<'a> {
         [rules().filter_map(|r| r[0]).reduce(f64::max), rules().filter_map(|r| r[1]).reduce(f64::min)]
     }
 
-    /// How each of them stands on a date, as the season counts it.
+    /// How each of them stands on a date by what is looked at, as the season counts it.
     pub(super) fn marks(&self, date: NaiveDate) -> impl Iterator<Item = (&'a Target, Mark)> {
-        let oxygen = self.session.season.oxygen;
+        self.marks_by(date, self.session.season.oxygen)
+    }
+
+    /// The same by its oxygen, or by its temperature.
+    fn marks_by(&self, date: NaiveDate, oxygen: bool) -> impl Iterator<Item = (&'a Target, Mark)> {
         self.rules().filter_map(move |(rule, told)| {
-            let days = if oxygen { &told.oxygen_days } else { &told.temperature_days };
+            let days = days_by(told, oxygen);
             let at = days.binary_search_by_key(&date, |day| day.0).ok()?;
             Some((rule, days.get(at)?.1))
         })
     }
+}
+
+/// How each day stands against a rule by its oxygen, or by its temperature.
+pub(super) fn days_by(told: &TargetTally, oxygen: bool) -> &[(NaiveDate, Mark)] {
+    if oxygen { &told.oxygen_days } else { &told.temperature_days }
+}
+
+/// The days outside by what is looked at, then by the other; what no rule asks is left out.
+fn outside(screen: &Screen) -> Vec<(String, Vec<usize>)> {
+    let looked_at = screen.session.season.oxygen;
+    let of = |oxygen: bool| {
+        let days = screen.shown.run.run.days.iter().enumerate();
+        let days = days.filter(|(_, day)| screen.marks_by(day.date, oxygen).any(|m| m.1.outside()));
+        let what = if oxygen { "O2" } else { screen.model.system().unit(Dimension::Temperature).symbol() };
+        (format!("outside {what}"), days.map(|day| day.0).collect())
+    };
+    let asked = |oxygen: &bool| screen.rules().any(|(_, told)| !days_by(told, *oxygen).is_empty());
+    let out: Vec<(String, Vec<usize>)> = [looked_at, !looked_at].into_iter().filter(asked).map(of).collect();
+    if out.is_empty() { vec![of(looked_at)] } else { out }
 }
 
 /// Least and greatest of some values; between 0 and 1 where there are none.
@@ -180,8 +204,11 @@ fn line(
     LineThrough { name: name.to_owned(), role, stroke, mark, values }
 }
 
-/// How what is asked, or kept, is drawn.
-const ASKED: (Role, Stroke, &str) = (Role::Range, Stroke::Dotted, "-");
+/// How what comes is drawn, what is asked, what is kept in reserve, what is usable.
+pub(super) const COMES: (Stroke, &str) = (Stroke::Broad, "*");
+pub(super) const ASKED: (Stroke, &str) = (Stroke::Thin, "-");
+const RESERVE: (Role, Stroke, &str) = (Role::Range, Stroke::Dotted, "-");
+pub(super) const USABLE: (Stroke, &str) = (Stroke::Broad, "*");
 
 fn release(screen: &Screen) -> CurvesThrough {
     let oxygen = screen.session.season.oxygen;
@@ -194,7 +221,8 @@ fn release(screen: &Screen) -> CurvesThrough {
     let asked = lows.iter().chain(&highs).copied().flatten();
     let reached = screen.shown.ahead.answer.runs().filter(|_| !oxygen && screen.point().is_none());
     let reached = reached.flat_map(|r| r.outcome.reached.iter().filter_map(|on| on.attainable_c)).flatten();
-    let role = if oxygen { Role::Oxygen } else { Role::Temperature };
+    let asks = (Role::Range, ASKED.0, ASKED.1);
+    let comes = (screen.role(), COMES.0, COMES.1);
     let name = match screen.point() {
         None => "release".to_owned(),
         Some(_) => screen.place(),
@@ -205,9 +233,9 @@ fn release(screen: &Screen) -> CurvesThrough {
         span: span(all.chain(asked).chain(reached)),
         shaded: ("attainable".to_owned(), reach),
         lines: vec![
-            line("", ASKED, lows),
-            line("asked", ASKED, highs),
-            line("what comes", (role, Stroke::Heavy, "*"), days.iter().map(|d| screen.value(d)).collect()),
+            line("", asks, lows),
+            line("asked", asks, highs),
+            line("what comes", comes, days.iter().map(|d| screen.value(d)).collect()),
         ],
     }
 }
@@ -235,10 +263,10 @@ fn cold(screen: &Screen) -> Option<CurvesThrough> {
     };
     let mut lines = vec![
         line("all", (Role::Plain, Stroke::Thin, "."), days.iter().map(|d| Some(d.total_m3)).collect()),
-        line("usable", (Role::Cold, Stroke::Heavy, "*"), days.iter().map(|d| d.usable_m3).collect()),
+        line("usable", (Role::Cold, USABLE.0, USABLE.1), days.iter().map(|d| d.usable_m3).collect()),
     ];
     if reserve.is_some() {
-        lines.insert(0, line("reserve", ASKED, days.iter().map(|d| kept(d.date)).collect()));
+        lines.insert(0, line("reserve", RESERVE, days.iter().map(|d| kept(d.date)).collect()));
     }
     let kept = reserve.map(|r| r.volume_m3);
     Some(CurvesThrough {

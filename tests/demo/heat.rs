@@ -1,6 +1,16 @@
 //! Heat through a water surface, on purpose by other relations than the program's own.
 
-use super::Hour;
+/// The air over water, of an hour or of a day.
+#[derive(Clone, Copy)]
+pub(crate) struct Hour {
+    pub(crate) air_c: f64,
+    pub(crate) dew_point_c: f64,
+    /// At 10 m.
+    pub(crate) wind_m_s: f64,
+    /// 0 to 1.
+    pub(crate) cloud: f64,
+    pub(crate) sun_w_m2: f64,
+}
 
 const STEFAN_BOLTZMANN_W_M2_K4: f64 = 5.67e-8;
 const KELVIN: f64 = 273.15;
