@@ -96,13 +96,12 @@ pub enum Fully {
 }
 
 impl Fully {
-    /// Of the days of a stretch, each with whether it can.
-    pub(super) fn of<'a>(days: impl Iterator<Item = &'a (NaiveDate, bool)> + Clone) -> Self {
-        let mut can = days.clone().filter(|day| day.1).map(|day| day.0);
-        match can.next() {
-            None => Self::Never,
-            Some(_) if days.clone().all(|day| day.1) => Self::Always,
-            Some(first) => Self::Within(first, can.last().unwrap_or(first)),
+    /// Of the days of a stretch, and those of them on which it can.
+    pub(super) fn of(days: usize, on: &[NaiveDate]) -> Self {
+        match on {
+            [] => Self::Never,
+            all if all.len() == days => Self::Always,
+            [first, ..] => Self::Within(*first, on.last().copied().unwrap_or(*first)),
         }
     }
 }

@@ -64,7 +64,8 @@ fn schedule(of: &Understood) -> Option<Problem> {
     let (words, cure) = if !dates().any(|date| of.begins <= date && date <= last) {
         let words = format!("no change of the schedule lies in the season, {} to {last}", of.begins);
         (words, "name a schedule of this season")
-    } else if let Some(held) = dates().last().filter(|held| *held <= of.begins && schedule.changes.len() > 1)
+    } else if let Some(held) =
+        dates().next_back().filter(|held| *held <= of.begins && schedule.changes.len() > 1)
     {
         let words =
             format!("the last row of the schedule is of {held}: what it sets is held to the end, {last}");
