@@ -18,8 +18,8 @@ use super::going::{Going, Morning, NOTHING_M3S};
 use super::set::{Flowing, flowing};
 use super::strategy::{Wants, changes_on, wants};
 
-/// What chooses among the mixes of a day: one, or every one that is worth following.
-type Chooses<'a> = &'a dyn Fn(&Choice) -> Result<Option<Vec<Chosen>>, NoMix>;
+/// What there is to choose; `None` where it is more than was asked for.
+type Found<T> = Result<Option<Vec<T>>, NoMix>;
 
 impl Going<'_> {
     /// What is asked, as it would flow on a day at a site, and the first limit it breaks. `None` where it gives no water.
@@ -139,7 +139,7 @@ impl Going<'_> {
         why: Why,
         most: usize,
         progress: Progress,
-    ) -> Result<Option<Vec<Option<Decision>>>, NoMix> {
+    ) -> Found<Option<Decision>> {
         self.decisions(morning, why, 0.0, &|choice| choice.every(most, progress), progress)
     }
 
@@ -151,9 +151,9 @@ impl Going<'_> {
         morning: &Morning,
         why: Why,
         aim: f64,
-        choose: Chooses,
+        choose: &dyn Fn(&Choice) -> Found<Chosen>,
         progress: Progress,
-    ) -> Result<Option<Vec<Option<Decision>>>, NoMix> {
+    ) -> Found<Option<Decision>> {
         let date = morning.date();
         let all = |found: Option<Vec<Chosen>>| {
             found.map(|every| every.into_iter().map(|one| Some(decision(date, why, one))).collect())

@@ -91,8 +91,9 @@ fn lives_of(site: &Site, run: &Run, outlet: usize) -> Vec<GateLife> {
         let within = |date: NaiveDate| {
             life.first_day.is_some_and(|first| first <= date) && life.last_day.is_none_or(|last| date <= last)
         };
-        let days: Vec<(NaiveDate, bool)> = fully.iter().copied().filter(|day| within(day.0)).collect();
-        life.fully = Fully::of(&days);
+        let of_it: Vec<(NaiveDate, bool)> = fully.iter().copied().filter(|day| within(day.0)).collect();
+        let on: Vec<NaiveDate> = of_it.iter().filter(|day| day.1).map(|day| day.0).collect();
+        life.fully = Fully::of(of_it.len(), &on);
     }
     out
 }

@@ -96,13 +96,12 @@ pub enum Fully {
 }
 
 impl Fully {
-    /// Of the days of a stretch, each with whether it can.
-    pub(super) fn of(days: &[(NaiveDate, bool)]) -> Self {
-        let mut can = days.iter().filter(|day| day.1).map(|day| day.0);
-        match can.next() {
-            None => Self::Never,
-            Some(_) if days.iter().all(|day| day.1) => Self::Always,
-            Some(first) => Self::Within(first, can.next_back().unwrap_or(first)),
+    /// Of the days of a stretch, and those of them on which it can.
+    pub(super) fn of(days: usize, on: &[NaiveDate]) -> Self {
+        match on {
+            [] => Self::Never,
+            all if all.len() == days => Self::Always,
+            [first, ..] => Self::Within(*first, on.last().copied().unwrap_or(*first)),
         }
     }
 }
