@@ -378,7 +378,7 @@ fn scenario_a_plan_by_the_release_that_fills_the_pool_above_full_is_flagged() {
     assert_eq!(flag("2026-08-01", 10.0), None, "eleven days are 9.504 m");
     let told = flag("2026-08-01", 15.0).unwrap();
     assert!(told.starts_with("plans/p.csv: flag: from the pool of 2026-08-01, 15.00 m, its flows"), "{told}");
-    assert!(told.contains("above full 20.00 m on 2026-08-06, with 4504000 m3 too much at most"), "{told}");
+    assert!(told.contains("above full 20.00 m on 2026-08-06, with 4,504,000 m3 too much at most"), "{told}");
     // ten days before its first row hold its first flows; from its middle on only what is left counts
     assert!(flag("2026-07-22", 10.0).unwrap().contains("on 2026-08-02"));
     assert_eq!(flag("2026-08-08", 15.0), None);

@@ -84,7 +84,7 @@ fn scenario_a_mix_is_held_no_longer_than_its_gates_are_there() {
     let best = gates(&answer["mixes"][0]);
     let best = held(&best.iter().map(String::as_str).collect::<Vec<_>>());
     let lost = list(&best["decisions"]).iter().find(|d| d["why"] == "forced").unwrap();
-    assert_eq!(lost["date"], "2025-07-20", "its gate is out in the days in which it is held");
+    assert_eq!(lost["date"], "2025-07-19", "its gate must stand as it should when its outage begins");
 }
 
 #[test]
