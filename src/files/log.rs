@@ -100,7 +100,7 @@ pub fn append(path: &Path, make: &dyn Fn(&Log) -> Result<Line, Problem>) -> Resu
         sync_folder(path);
     }
     let mended = torn.then(|| {
-        let words = "the last line was torn: whoever wrote it was stopped; it was closed and left as it is";
+        let words = "the last line had no end: whoever wrote it was stopped; it was closed and left as it is";
         let line = known.problems.iter().filter_map(|p| p.place.line).max().unwrap_or(1);
         Problem::flag("log-torn", words, "see whether that decision has to be logged again")
             .in_file(path.display().to_string())
@@ -168,9 +168,13 @@ fn parsed(path: &Path, bytes: Vec<u8>) -> ReadLog {
         if text.iter().all(u8::is_ascii_whitespace) {
             continue;
         }
-        // a line without its end was never confirmed, even where it reads well
-        let line = if number == count && !ends { Err(torn()) } else { one(text) };
-        match line {
+        if number == count && !ends && one(text).is_ok() {
+            let words =
+                "the last line has no end: whoever wrote it was stopped before it was confirmed; it counts";
+            problems
+                .push(Problem::flag("log-unended", words, "amend it where it should not").on_line(number));
+        }
+        match one(text) {
             Ok(line) => lines.push(Placed { number, line }),
             Err(problem) => problems.push(problem.on_line(number)),
         }

@@ -12,6 +12,8 @@ mod escapes;
 mod exits;
 mod learn;
 mod limits;
+mod log;
+mod log_kept;
 mod loggers;
 mod new;
 mod prices;
