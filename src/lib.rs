@@ -8,6 +8,7 @@ pub mod plot;
 pub mod problem;
 pub mod profile;
 pub mod rank;
+pub mod record;
 pub mod report;
 pub mod river;
 pub mod season;

@@ -135,6 +135,29 @@ pub(super) fn answer(cli: &Cli, clock: DateTime<Utc>, progress: Progress) -> Res
             };
             (shown, strictly(*strict, answer.main.missed()))
         }
+        Some(Command::Log { common, asked, setting, release }) => {
+            let context = tasks::open(&common.asked(), clock)?;
+            let logged = if asked.decides() {
+                let asked = asked.decision(setting, release.as_deref());
+                let logged = tasks::log::decide(&context, &asked, clock, &|done| progress.tell(done))?;
+                drop(progress);
+                Some(logged)
+            } else if let Some(text) = &asked.event {
+                Some(tasks::log::event(&context, &asked.event(text), clock)?)
+            } else if let Some(word) = asked.idle() {
+                let words = format!("{word} goes with --decide, --amend NUMBER or --event TEXT");
+                return Err(Failure::Usage(words).into());
+            } else {
+                None
+            };
+            let shown = match (&logged, common.json) {
+                (None, true) => json::log(&context),
+                (None, false) => common.color.of(&text::log(&context)),
+                (Some(logged), true) => json::logged(logged),
+                (Some(logged), false) => common.color.of(&text::logged(&context, logged)),
+            };
+            (shown, End::Answered)
+        }
         Some(Command::Check { site, json }) => {
             let (problems, system) = tasks::check(site);
             let shown = if *json { json::check(&problems) } else { text::check(site, &problems, system) };

@@ -10,6 +10,7 @@ use crate::tasks::{Asked, Word};
 use crate::units::System;
 
 use super::colour::Colour;
+use super::entry::Entry;
 
 /// Which gates, how far open: release temperature and oxygen from a layered reservoir.
 #[derive(Debug, Parser)]
@@ -105,6 +106,18 @@ pub(super) enum Command {
         /// Exit with 4 when a day lies outside a hard target, or the season stops before its plan.
         #[arg(long)]
         strict: bool,
+    },
+    /// What was decided, what happened; and a decision or an event to be logged.
+    Log {
+        #[command(flatten)]
+        common: Common,
+        #[command(flatten)]
+        asked: Entry,
+        #[command(flatten)]
+        setting: Setting,
+        /// What the well of the gates opened carries; without a setting, the total release the first is ranked at.
+        #[arg(long, value_name = "FLOW", requires = "decide")]
+        release: Option<String>,
     },
     /// Are my files sound? Every problem of the site file, of every cast and of every series.
     Check {

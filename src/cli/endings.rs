@@ -5,6 +5,7 @@ use std::process::ExitCode;
 
 use crate::problem::{Problem, harmless};
 use crate::tasks::Failure;
+use crate::tasks::log::NotLogged;
 
 /// How a run ended.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -53,6 +54,15 @@ pub(super) enum Stop {
 impl From<Failure> for Stop {
     fn from(failure: Failure) -> Self {
         Self::Task(failure)
+    }
+}
+
+impl From<NotLogged> for Stop {
+    fn from(failure: NotLogged) -> Self {
+        match failure {
+            NotLogged::Task(failure) => Self::Task(failure),
+            NotLogged::Machine(problem) => Self::Machine(problem),
+        }
     }
 }
 

@@ -4,6 +4,7 @@ mod answers;
 mod arguments;
 mod colour;
 mod endings;
+mod entry;
 mod progress;
 
 use std::ffi::OsString;

@@ -103,7 +103,7 @@ fn temporary(target: &Path, bytes: &[u8], kept: Option<Permissions>) -> io::Resu
 }
 
 /// Forces a new name to disk.
-fn sync_folder(target: &Path) {
+pub(super) fn sync_folder(target: &Path) {
     // the file stands by now; where a network share cannot sync a folder there is nothing to undo
     #[cfg(unix)]
     let _ = File::open(above(target)).and_then(|folder| folder.sync_all());

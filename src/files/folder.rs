@@ -17,6 +17,7 @@ mod around;
 mod casts;
 mod found;
 mod inside;
+mod log;
 mod plans;
 
 pub use around::Around;
@@ -167,14 +168,24 @@ impl Folder {
 
     /// Fingerprint of the site file and of further inputs: 12 hexadecimal digits of SHA-256 over lengths and bytes.
     pub fn fingerprint(&self, others: &[&Source]) -> String {
-        let mut hash = Sha256::new();
-        for source in std::iter::once(&self.source).chain(others.iter().copied()) {
-            hash.update((source.bytes.len() as u64).to_le_bytes());
-            hash.update(&source.bytes);
-        }
-        let digits = |b: &u8| [b >> 4, b & 15].map(|d| char::from_digit(d.into(), 16).unwrap_or('0'));
-        hash.finalize().iter().take(6).flat_map(digits).collect()
+        self.fingerprint_of(others.iter().map(|source| source.bytes.as_slice()))
     }
+
+    /// The same of inputs as bytes.
+    pub fn fingerprint_of<'a>(&'a self, others: impl Iterator<Item = &'a [u8]>) -> String {
+        fingerprint(std::iter::once(self.source.bytes.as_slice()).chain(others))
+    }
+}
+
+/// Fingerprint of some bytes: 12 hexadecimal digits of SHA-256 over lengths and bytes.
+pub fn fingerprint<'a>(parts: impl Iterator<Item = &'a [u8]>) -> String {
+    let mut hash = Sha256::new();
+    for bytes in parts {
+        hash.update((bytes.len() as u64).to_le_bytes());
+        hash.update(bytes);
+    }
+    let digits = |b: &u8| [b >> 4, b & 15].map(|d| char::from_digit(d.into(), 16).unwrap_or('0'));
+    hash.finalize().iter().take(6).flat_map(digits).collect()
 }
 
 /// The folder and the site file that a path on disk names: either of them.
@@ -219,6 +230,7 @@ pub fn check(named: &str) -> (Vec<Problem>, System) {
             problems.extend(folder.around().problems.iter().cloned());
             problems.extend(folder.plans_said());
             problems.extend(folder.schedules_said());
+            problems.extend(folder.log().problems);
             problems.extend(folder.years().iter().flat_map(|years| years.problems.iter().cloned()));
             (problems, folder.site.units.system())
         }

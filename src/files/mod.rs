@@ -8,6 +8,7 @@ pub mod cast;
 pub mod cursor;
 pub mod folder;
 mod lines;
+pub mod log;
 pub mod plan;
 pub mod schedule;
 pub mod settings;

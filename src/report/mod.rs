@@ -7,4 +7,4 @@ mod sentence;
 pub mod text;
 
 pub use column::{drawn_column, fitted};
-pub use sentence::{METHOD, caution, caution_within, days, flags_of};
+pub use sentence::{caution, caution_within, days, flags_of};

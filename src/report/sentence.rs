@@ -5,9 +5,6 @@ use crate::site::Site;
 use crate::tasks::rank::Unsure;
 use crate::units::say;
 
-/// How the figures were made.
-pub const METHOD: &str = "point-sink withdrawal (WES H-73-4, E-87-2), samples as measured, levelled density; 10-90 % of seeded perturbed cases";
-
 /// What every output says, on one line.
 pub fn caution() -> &'static str {
     "Advisory estimate. Operations defer to the dam-safety authority and the approved water control plan; a responsible licensed engineer decides. Warn downstream users of changes in stage and cold water."

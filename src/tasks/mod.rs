@@ -10,6 +10,7 @@ use chrono::{DateTime, FixedOffset, SubsecRound, Utc};
 
 use crate::files::cast::{TIME_CURE, parse_time};
 use crate::files::folder::{self, Folder, demonstrations};
+use crate::files::log::ReadLog;
 use crate::files::template;
 use crate::files::text::Source;
 use crate::mix::Day;
@@ -24,6 +25,7 @@ mod casts;
 mod change;
 mod changed;
 mod day;
+pub mod log;
 mod mix;
 mod pool;
 pub mod rank;
@@ -142,6 +144,8 @@ pub struct Context {
     pub conditions: Arc<Conditions>,
     /// What an answer has to say of the files that tell it.
     pub said: Vec<Problem>,
+    /// What was decided at the site.
+    pub log: Arc<ReadLog>,
     /// The cast's bytes.
     source: Source,
 }
@@ -155,6 +159,11 @@ impl Context {
     /// The decision date with what is known around the river.
     pub fn day(&self) -> Day {
         Day::new(self.site(), self.on.date_naive(), self.conditions.clone())
+    }
+
+    /// Fingerprint of the cast alone.
+    pub fn cast_fingerprint(&self) -> String {
+        folder::fingerprint(std::iter::once(self.source.bytes.as_slice()))
     }
 
     /// How many rules of this season do not hold today, and why; `None` where all do.
@@ -182,10 +191,15 @@ impl Context {
         // every answer tells which files it passes over, as it does of casts
         profile.flags.extend(said.iter().filter(|p| is_passed_over(p)).cloned());
         let sources: Vec<&Source> = [&source].into_iter().chain(&around.sources).collect();
-        let fingerprint = folder.fingerprint(&sources);
+        let log = Arc::new(folder.log());
+        profile.flags.extend(log.problems.iter().cloned());
+        // what was decided is what is set now
+        let bytes = sources.iter().map(|source| source.bytes.as_slice());
+        let logged = Some(log.bytes.as_slice()).filter(|bytes| !bytes.is_empty());
+        let fingerprint = folder.fingerprint_of(bytes.chain(logged));
         let conditions = folder.conditions();
         profile.flags.extend(apart::tailwater(&folder.site, &conditions, &profile));
-        Self { folder, profile, on, on_from, age_days, fingerprint, system, conditions, said, source }
+        Self { folder, profile, on, on_from, age_days, fingerprint, system, conditions, said, log, source }
     }
 }
 

@@ -26,16 +26,18 @@ pub fn setting(context: &Context, words: &[Word]) -> Result<Understood, Failure>
     given(context, &Given::typed(context.site(), words, context.profile.pool_m)?)
 }
 
-/// The setting now, as the site file gives it.
+/// The setting now: that of the last decision in the log, else as the site file gives it.
 ///
 /// # Errors
 /// As [`setting`]; [`Failure::Usage`] too where there is none.
 pub fn now_setting(context: &Context) -> Result<Understood, Failure> {
-    let now = Given::now(context.site());
+    let (now, said) = context.now_given();
     if now == Given::default() {
-        return Err(Failure::Usage("the site file gives none under `now`".into()));
+        return Err(Failure::Usage("no decision is logged, and the site file gives none under `now`".into()));
     }
-    given(context, &now)
+    let mut understood = given(context, &now)?;
+    understood.notes.extend(said);
+    Ok(understood)
 }
 
 /// The setting that is given in numbers.

@@ -1,6 +1,7 @@
 //! A setting as it is typed: `--set N1=30`, `--open N3=50%`, `--release 40`, and `--now` for either of the first.
 
 use crate::intake;
+use crate::record::line::Gates;
 use crate::site::{SAME_OPENING, SetNow, Site};
 use crate::units::Dimension;
 
@@ -59,6 +60,22 @@ impl Given {
         }
         given.totals.extend(site.now_wells.iter().filter(|t| t.1 > 0.0));
         given.by_name(site)
+    }
+
+    /// What a decision in the log set; gates that the site no longer has are named.
+    pub fn logged(site: &Site, gates: &Gates) -> (Self, Vec<String>) {
+        let mut given = Self::default();
+        let mut gone = Vec::new();
+        for (name, &flow_m3s) in &gates.set {
+            let opening = gates.open.get(name).map(|percent| percent / 100.0);
+            match site.outlet(name) {
+                // what spills by itself does so under the pool of today
+                Some(outlet) if intake::spills_by_itself(&site.outlets[outlet]) => {}
+                Some(outlet) => given.flows.push(ByFlow { outlet, flow_m3s, opening }),
+                None => gone.push(name.clone()),
+            }
+        }
+        (given.by_name(site), gone)
     }
 
     /// What the words say, in whatever order they stand.

@@ -13,6 +13,8 @@ mod exits;
 mod learn;
 mod left;
 mod limits;
+mod log;
+mod log_kept;
 mod loggers;
 mod new;
 mod prices;

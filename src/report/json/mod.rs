@@ -1,6 +1,7 @@
 //! Answers as JSON: SI whatever the display, absent is null, full precision.
 
 mod learned;
+mod log;
 mod needed;
 mod rank;
 mod rank_shape;
@@ -19,6 +20,7 @@ use serde::Serialize;
 use crate::mix::limits::Check;
 use crate::mix::{Drawn, Gate, Mix, Setting, WellState};
 use crate::problem::{Problem, Weight, is_harmful};
+use crate::record::METHOD;
 use crate::site::Site;
 use crate::tasks::{Change, ColdChange, Context, MixAnswer, Move, PoolAnswer, Since};
 use crate::units::{System, in_system};
@@ -30,11 +32,12 @@ use shape::{
     SinceJson, WarningJson, WellJson, ZoneJson,
 };
 
-use super::sentence::{METHOD, caution};
+use super::sentence::caution;
 
 use targets::{conflicts, points, targets};
 
 pub use learned::learned;
+pub use log::{log, logged};
 pub use needed::needed;
 pub use rank::{rank, rank_priced};
 pub use river::river;
@@ -170,19 +173,20 @@ fn since(s: &Since) -> SinceJson {
 
 /// The answer of `check`.
 pub fn check(problems: &[Problem]) -> String {
-    let list: Vec<ProblemJson> = problems
-        .iter()
-        .map(|p| ProblemJson {
-            weight: p.weight.word(),
-            kind: p.kind,
-            file: p.place.file.clone(),
-            line: p.place.line,
-            path: p.place.path.clone(),
-            text: p.sentence(System::Si),
-            cure: in_system(&p.cure, System::Si),
-        })
-        .collect();
+    let list: Vec<ProblemJson> = problems.iter().map(problem).collect();
     written(&list)
+}
+
+fn problem(p: &Problem) -> ProblemJson {
+    ProblemJson {
+        weight: p.weight.word(),
+        kind: p.kind,
+        file: p.place.file.clone(),
+        line: p.place.line,
+        path: p.place.path.clone(),
+        text: p.sentence(System::Si),
+        cure: in_system(&p.cure, System::Si),
+    }
 }
 
 fn written(value: &impl Serialize) -> String {

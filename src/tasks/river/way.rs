@@ -63,7 +63,7 @@ pub struct Way {
 
 impl Way {
     /// Of a setting judged as `mix` does.
-    pub(super) fn of_mix(context: &Context, which: Which, answer: &MixAnswer) -> Self {
+    pub(in crate::tasks) fn of_mix(context: &Context, which: Which, answer: &MixAnswer) -> Self {
         let day = answer.day.as_ref();
         let parts: Vec<(f64, &Setting, &Mix)> = match day {
             Some(day) => day.blocks.iter().map(|b| (b.share, &b.setting, &b.mix)).collect(),
@@ -75,7 +75,7 @@ impl Way {
     }
 
     /// Of a ranked mix.
-    pub(super) fn of_ranked(context: &Context, which: Which, shown: &Shown) -> Self {
+    pub(in crate::tasks) fn of_ranked(context: &Context, which: Which, shown: &Shown) -> Self {
         let parts: Vec<_> = shown.parts.iter().map(|p| (p.share, &p.setting, &p.mix)).collect();
         Self::new(context, which, &parts, &shown.targets, &shown.conflicts)
     }
