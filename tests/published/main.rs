@@ -8,6 +8,7 @@ mod gas;
 mod layering;
 mod mix;
 mod observed;
+mod order;
 mod outcome;
 mod pool;
 mod rejected;
