@@ -70,6 +70,12 @@ impl Axis {
         self.leg(flows.into_iter().map(|flow| Put::new(from.opening, flow)), true, stopping);
     }
 
+    /// Whether the way into a place goes on with the movement that leads to the one before.
+    pub(super) fn goes_on(&self, to: usize) -> bool {
+        let before = to.checked_sub(1).and_then(|at| self.stops.get(at));
+        before.zip(self.stops.get(to)).is_some_and(|(a, b)| b.free && a.leg == b.leg)
+    }
+
     /// At how many places beyond one it still has to open, or to shut.
     pub(super) fn still(&self, at: usize, opens: bool) -> usize {
         (at + 1..self.stops.len()).filter(|to| self.opens(*to) == Some(opens)).count()

@@ -28,7 +28,7 @@ use step::Judge;
 use works::{Works, is_hard};
 
 /// Parts into which free movements are cut, one after the other until a way is found (choice).
-const PARTS: [usize; 3] = [4, 8, 16];
+const PARTS: [usize; 5] = [1, 2, 4, 8, 16];
 /// Most standings looked at (choice): a few seconds of one core.
 pub const MOST_STATES: usize = 20_000;
 

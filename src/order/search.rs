@@ -105,6 +105,30 @@ pub(super) struct Search<'a> {
 /// Places of all axes, and the axis moved last (their number where none was).
 type Node = (Vec<usize>, usize);
 
+/// A step that cannot be taken from a node.
+struct Miss {
+    node: Node,
+    axis: usize,
+    to: usize,
+    check: Check,
+    by_rate: bool,
+}
+
+/// Nodes to be done and steps to be looked at, the cheapest first; of what is level that which moves the first of the
+/// site first.
+#[derive(Default)]
+struct Queue(BinaryHeap<Reverse<(Cost, Reverse<Vec<usize>>, usize, Option<usize>)>>);
+
+impl Queue {
+    fn push(&mut self, cost: Cost, node: Node, axis: Option<usize>) {
+        self.0.push(Reverse((cost, Reverse(node.0), node.1, axis)));
+    }
+
+    fn pop(&mut self) -> Option<(Node, Option<usize>)> {
+        self.0.pop().map(|Reverse((_, Reverse(places), last, axis))| ((places, last), axis))
+    }
+}
+
 /// How a node was reached.
 struct Reached {
     cost: Cost,
@@ -119,53 +143,56 @@ impl Search<'_> {
         let mut tried: HashMap<(Vec<usize>, usize), Rc<Tried>> = HashMap::new();
         let mut reached: HashMap<Node, Reached> = HashMap::new();
         reached.insert(begin.clone(), Reached { cost: Cost::default(), by: None, done: false });
-        let mut heap = BinaryHeap::from([Reverse((Cost::default(), begin))]);
+        let mut queue = Queue::default();
+        queue.push(self.left(&begin), begin, None);
         let mut nodes = 0_usize;
-        let mut blocked: Vec<(Node, usize, Check, usize, bool)> = Vec::new();
-        while let Some(Reverse((cost, node))) = heap.pop() {
-            match reached.get_mut(&node) {
-                Some(at) if !at.done => at.done = true,
-                _ => continue,
-            }
-            if node.0 == goal {
-                return Searched::Found(cost, way(&reached, &node));
-            }
-            nodes += 1;
-            if works.count() > self.most_states || nodes > NODES_PER_STATE * self.most_states {
-                return Searched::TooMany;
-            }
-            let standing = self.standing(&node.0);
-            for (axis, moved) in self.axes.iter().enumerate() {
-                let from = node.0[axis];
-                if from == goal[axis] {
+        let mut misses: Vec<Miss> = Vec::new();
+        while let Some((node, axis)) = queue.pop() {
+            let Some(at) = reached.get_mut(&node) else { continue };
+            let cost = at.cost;
+            let Some(axis) = axis else {
+                if std::mem::replace(&mut at.done, true) {
                     continue;
                 }
-                let known = tried.get(&(node.0.clone(), axis)).cloned();
-                let step = known.unwrap_or_else(|| {
-                    let step = Rc::new(self.judge.tried(works, &standing, moved, from));
-                    match *step {
-                        Tried::Blocked(check, to) => blocked.push((node.clone(), axis, check, to, false)),
-                        Tried::TooFast(check, to) => blocked.push((node.clone(), axis, check, to, true)),
-                        _ => {}
-                    }
-                    tried.insert((node.0.clone(), axis), Rc::clone(&step));
-                    step
-                });
-                let Tried::Taken(taken) = &*step else { continue };
-                let mut places = node.0.clone();
-                places[axis] = taken.to;
-                let before = works.state(&standing).value;
-                let next_cost = cost.plus(self.cost(&node, axis, taken, before));
-                let next: Node = (places, axis);
-                if reached.get(&next).is_none_or(|r| next_cost < r.cost) {
-                    let leg = Leg { axis, from, taken: taken.clone() };
-                    let by = Some((node.clone(), leg));
-                    reached.insert(next.clone(), Reached { cost: next_cost, by, done: false });
-                    heap.push(Reverse((next_cost, next)));
+                if node.0 == goal {
+                    return Searched::Found(cost, way(&reached, &node));
                 }
+                nodes += 1;
+                if works.count() > self.most_states || nodes > NODES_PER_STATE * self.most_states {
+                    return Searched::TooMany;
+                }
+                // what a step costs at least is known before it is looked at
+                for axis in (0..self.axes.len()).filter(|&a| node.0[a] < goal[a]) {
+                    let mut next = node.clone();
+                    (next.0[axis], next.1) = (node.0[axis] + 1, axis);
+                    let least = cost.plus(self.turn(&node, axis)).plus(self.left(&next));
+                    queue.push(least, node.clone(), Some(axis));
+                }
+                continue;
+            };
+            let (from, standing) = (node.0[axis], self.standing(&node.0));
+            let known = tried.get(&(node.0.clone(), axis)).cloned();
+            let step = known.unwrap_or_else(|| {
+                let step = Rc::new(self.judge.tried(works, &standing, &self.axes[axis], from));
+                if let Tried::Blocked(check, to) | Tried::TooFast(check, to) = *step {
+                    let by_rate = matches!(*step, Tried::TooFast(..));
+                    misses.push(Miss { node: node.clone(), axis, to, check, by_rate });
+                }
+                tried.insert((node.0.clone(), axis), Rc::clone(&step));
+                step
+            });
+            let Tried::Taken(taken) = &*step else { continue };
+            let before = works.state(&standing).value;
+            let next_cost = cost.plus(self.turn(&node, axis)).plus(self.change(taken, before));
+            let mut next = node.clone();
+            (next.0[axis], next.1) = (taken.to, axis);
+            if reached.get(&next).is_none_or(|r| next_cost < r.cost) {
+                let by = Some((node.clone(), Leg { axis, from, taken: taken.clone() }));
+                reached.insert(next.clone(), Reached { cost: next_cost, by, done: false });
+                queue.push(next_cost.plus(self.left(&next)), next, None);
             }
         }
-        Searched::None(self.blocks(&reached, &goal, &blocked))
+        Searched::None(self.blocks(&reached, &goal, &misses))
     }
 
     /// How everything stands at places of the axes.
@@ -179,18 +206,21 @@ impl Search<'_> {
         out
     }
 
-    /// What a step from a node costs.
-    fn cost(&self, node: &Node, axis: usize, taken: &Taken, before: Value) -> Cost {
+    /// What the next step of an axis costs by its turn alone.
+    fn turn(&self, node: &Node, axis: usize) -> Cost {
         let this = &self.axes[axis];
-        let from = node.0[axis];
-        let (to, begun) = (&this.stops[taken.to], &this.stops[from]);
-        let goes_on = node.1 == axis && to.free && begun.leg == to.leg;
+        let to = node.0[axis] + 1;
+        let goes_on = node.1 == axis && this.goes_on(to);
         let first = !self.judge.manner.shut_first;
-        let against = !goes_on && this.opens(taken.to) == Some(!first);
+        let against = !goes_on && this.opens(to) == Some(!first);
         let others = self.axes.iter().enumerate().filter(|(other, _)| against && *other != axis);
         let out_of_turn: usize = others.map(|(other, a)| a.still(node.0[other], first)).sum();
-        let (mut value, mut seconds) = (before, 0.0);
-        let mut astray = 0.0;
+        Cost { out_of_turn: out_of_turn as u64, steps: u64::from(!goes_on), ..Cost::default() }
+    }
+
+    /// What a step costs by what it does to the release.
+    fn change(&self, taken: &Taken, before: Value) -> Cost {
+        let (mut value, mut seconds, mut astray) = (before, 0.0, 0.0);
         for after in taken.pieces.iter().filter_map(|piece| piece.values.last()) {
             seconds += self.judge.rates.map_or(0.0, |rates| rates.seconds(value, *after));
             value = *after;
@@ -198,31 +228,33 @@ impl Search<'_> {
         if let (Some((a, b)), Some(t)) = (self.ends_c, value.temperature_c) {
             astray = (t - a.max(b)).max(a.min(b) - t).max(0.0);
         }
-        Cost {
-            out_of_turn: out_of_turn as u64,
-            steps: u64::from(!goes_on),
-            seconds: whole(seconds),
-            astray: whole(1e6 * astray),
-        }
+        Cost { seconds: whole(seconds), astray: whole(1e6 * astray), ..Cost::default() }
     }
 
-    /// The blocked steps that tell most.
-    fn blocks(
-        &self,
-        reached: &HashMap<Node, Reached>,
-        goal: &[usize],
-        blocked: &[(Node, usize, Check, usize, bool)],
-    ) -> Blocks {
+    /// What is left to do from a node, at least.
+    fn left(&self, node: &Node) -> Cost {
+        let of = |(axis, this): (usize, &Axis)| {
+            let at = node.0[axis];
+            let left = (at + 1..this.stops.len()).filter(|&to| to == at + 1 || !this.goes_on(to)).count();
+            left - usize::from(left > 0 && node.1 == axis && this.goes_on(at + 1))
+        };
+        let steps: usize = self.axes.iter().enumerate().map(of).sum();
+        Cost { steps: steps as u64, ..Cost::default() }
+    }
+
+    /// The misses that tell most.
+    fn blocks(&self, reached: &HashMap<Node, Reached>, goal: &[usize], misses: &[Miss]) -> Blocks {
         let mut out = Blocks::default();
-        for (node, axis, check, to, by_rate) in blocked {
+        for miss in misses {
+            let places = &miss.node.0;
             let share = |(at, goal): (&usize, &usize)| *at as f64 / *goal as f64;
-            let done = node.0.iter().zip(goal).map(share).sum::<f64>() / goal.len() as f64;
-            let mut block =
-                Block { way: Vec::new(), axis: *axis, from: node.0[*axis], to: *to, check: *check, done };
+            let done = places.iter().zip(goal).map(share).sum::<f64>() / goal.len() as f64;
+            let Miss { axis, to, check, by_rate, .. } = *miss;
+            let mut block = Block { way: Vec::new(), axis, from: places[axis], to, check, done };
             out.finer_may_help |= finer_may_help(check.rule);
-            let best = if *by_rate { &mut out.by_rate } else { &mut out.by_limit };
+            let best = if by_rate { &mut out.by_rate } else { &mut out.by_limit };
             if best.as_ref().is_none_or(|b| block.is_nearer(b)) {
-                block.way = way(reached, node);
+                block.way = way(reached, &miss.node);
                 *best = Some(block);
             }
         }

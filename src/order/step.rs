@@ -14,6 +14,8 @@ use super::works::{Value, Works};
 
 /// Parts of the way between two places at whose ends every limit is held (choice).
 const LOOKS: usize = 4;
+/// The same of a movement without any place between (choice).
+const LOOKS_AT_ONCE: usize = 8;
 /// Most halvings of a movement that can halt anywhere (choice): pieces of a sixty-fourth.
 const HALVINGS: u32 = 6;
 
@@ -77,11 +79,13 @@ impl Judge<'_> {
                 return check.map_or(Tried::Waits, |check| Tried::Blocked(check, to - 1));
             };
             let mut halts = true;
-            for look in 1..=LOOKS {
-                let put = if look == LOOKS {
+            let at_once = b.free && !axis.goes_on(to) && !axis.goes_on(to + 1);
+            let looks = if at_once { LOOKS_AT_ONCE } else { LOOKS };
+            for look in 1..=looks {
+                let put = if look == looks {
                     b.put
                 } else {
-                    let share = look as f64 / LOOKS as f64;
+                    let share = look as f64 / looks as f64;
                     between(works.site, works.pool_m, axis.moved, (a.put, b.put), share)
                 };
                 let at = At { put, state: works.state(&standing.with(axis.moved, put)) };

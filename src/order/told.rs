@@ -135,9 +135,7 @@ pub(super) fn stuck(
     let after = works.full(&standing.with(axis.moved, to));
     let mut begun = stand(axis.moved, axis.stops[block.from].put, &before);
     // a movement that gets part of the way is told as one
-    let goes_on = axis.stops[block.to].free
-        && axis.stops[block.from].leg == axis.stops[block.to].leg
-        && block.way.last().is_some_and(|leg| leg.axis == block.axis);
+    let goes_on = axis.goes_on(block.to) && block.way.last().is_some_and(|leg| leg.axis == block.axis);
     if let Some(last) = steps.pop_if(|last| goes_on && last.moved == axis.moved) {
         begun = last.from;
     }

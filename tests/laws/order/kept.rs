@@ -100,7 +100,7 @@ fn law_no_state_of_an_order_misses_a_hard_limit_and_every_window_keeps_its_rates
     let mut count = [0_usize; 6];
     let mut passed = 0;
     for seed in 0..CASES {
-        let kinds = Kinds { starts: seed % 2 == 0, rates: seed % 3 == 0 };
+        let kinds = Kinds { starts: seed % 2 == 0, rates: seed % 3 == 0, narrow: seed % 4 != 0 };
         let Some(case) = case(seed, kinds) else { continue };
         let manner = Manner { shut_first: seed % 5 == 0, through_bands: seed % 7 == 0, ..Manner::default() };
         match case.order(manner) {
@@ -135,7 +135,7 @@ fn law_no_state_of_an_order_misses_a_hard_limit_and_every_window_keeps_its_rates
     );
     eprintln!("{words}");
     assert!(
-        plain > 5 && stopped > 1 && missing > 3 && impossible > 0 && passed > 0 && unsettled < 5,
+        plain > 5 && stopped > 0 && missing > 3 && impossible > 0 && passed > 0 && unsettled < 5,
         "{words}"
     );
 }
@@ -144,7 +144,10 @@ fn law_no_state_of_an_order_misses_a_hard_limit_and_every_window_keeps_its_rates
 fn law_the_order_of_the_gates_changes_nothing() {
     let mut found = 0;
     for seed in 0..CASES / 3 {
-        let Some(case) = case(1000 + seed, Kinds { starts: false, rates: seed % 2 == 0 }) else { continue };
+        let Some(case) = case(1000 + seed, Kinds { starts: false, rates: seed % 2 == 0, narrow: true })
+        else {
+            continue;
+        };
         let turned = |mut setting: Setting| {
             setting.gates.reverse();
             setting.leaks.reverse();

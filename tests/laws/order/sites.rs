@@ -21,6 +21,8 @@ pub(super) struct Kinds {
     pub(super) starts: bool,
     /// Rates of change.
     pub(super) rates: bool,
+    /// Bands narrower than the looks at a step, and flows to avoid; else limits that leave little room.
+    pub(super) narrow: bool,
 }
 
 /// A dam and the change.
@@ -122,24 +124,27 @@ fn sum(asked: &Asked) -> f64 {
 /// Limits near what the change needs, so that some stand in its way.
 fn limit(raw: &mut Raw, water: &Pool, (now, wanted): (&Asked, &Asked), kinds: Kinds, dice: &mut Dice) {
     let (low, high) = (sum(now).min(sum(wanted)), sum(now).max(sum(wanted)));
-    raw.release_min_m3s = dice.maybe(2, 0.5..1.0).map(|share| share * low).filter(|least| *least > 0.0);
+    let tight = !kinds.narrow;
+    let least = if tight { dice.maybe(1, 0.8..1.0) } else { dice.maybe(2, 0.5..1.0) };
+    raw.release_min_m3s = least.map(|share| share * low).filter(|least| *least > 0.0);
     raw.release_max_m3s = dice.maybe(2, 1.0..1.4).map(|share| share * high).filter(|most| *most > 0.0);
     let open = |asked: &Asked, name: &str, raw: &Raw| {
         asked.open.iter().filter(|o| raw.outlets[o.0].well.as_deref() == Some(name)).count()
     };
     for well in 0..raw.wells.len() {
         let most = open(now, WELLS[well], raw).max(open(wanted, WELLS[well], raw)).max(1);
-        raw.wells[well].max_open = dice.once_in(3).then_some(most as f64);
+        raw.wells[well].max_open = dice.once_in(if tight { 1 } else { 3 }).then_some(most as f64);
         raw.wells[well].max_head_loss_m = dice.maybe(3, 0.2..4.0);
         raw.wells[well].min_flow_m3s = dice.maybe(3, 0.05..0.25).filter(|_| kinds.starts).map(|s| s * high);
     }
     for outlet in &mut raw.outlets {
         let gate = outlet.well.is_some();
         if dice.once_in(5) && gate {
-            let (from, to) = dice.one_of(&[(0.1, 0.35), (0.6, 0.9), (0.55, 0.58)]);
+            let bands = [(0.1, 0.35), (0.6, 0.9), (0.55, 0.58)];
+            let (from, to) = dice.one_of(&bands[..if kinds.narrow { 3 } else { 2 }]);
             outlet.avoid.push(RawAvoid { openings: Some((from, to)), ..RawAvoid::default() });
         }
-        if dice.once_in(8) {
+        if dice.once_in(8) && kinds.narrow {
             let from = dice.between(0.1..0.5) * high.max(1.0);
             outlet.avoid.push(RawAvoid { flows_m3s: Some((from, 1.1 * from)), ..RawAvoid::default() });
         }
