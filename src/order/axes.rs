@@ -119,13 +119,14 @@ impl Change<'_> {
         let direct = outlets.filter_map(|(index, outlet)| {
             let moved = Moved::Outlet(index);
             let (from, to) = self.ends(moved);
+            let interrupts = from.flow_m3s > 0.0 && to.flow_m3s > 0.0;
             let must = outlet.moves_under_flow == Some(false);
-            let apart = must || !self.by_opening(outlet, from, to);
-            (travels(outlet, from, to, self.by_opening(outlet, from, to)) && apart).then(|| Stoppable {
-                moved,
-                must,
-                interrupts: from.flow_m3s > 0.0 && to.flow_m3s > 0.0,
-            })
+            let by_opening = self.by_opening(outlet, from, to);
+            // what has no positions is moved by every change of its flow
+            let by_flow =
+                must && interrupts && outlet.positions.is_empty() && !same_flow(from.flow_m3s, to.flow_m3s);
+            let by_gate = travels(outlet, from, to, by_opening) && (must || !by_opening);
+            (by_gate || by_flow).then_some(Stoppable { moved, must, interrupts })
         });
         let wells = (0..self.site.wells.len()).filter_map(|well| {
             let moved = Moved::Well(well);
@@ -197,7 +198,11 @@ impl Change<'_> {
             // it stands as it does, and something else holds its flow
             let opening = if from.flow_m3s > 0.0 { from.opening } else { to.opening };
             let mut axis = Axis::from(moved, Put::new(opening, from.flow_m3s));
-            axis.flow_leg(to.flow_m3s, cut(to.flow_m3s - from.flow_m3s), least, false);
+            if stopped.contains(&moved) {
+                axis.flow_leg(0.0, cut(from.flow_m3s), least, true);
+            }
+            let change = to.flow_m3s - axis.last().flow_m3s;
+            axis.flow_leg(to.flow_m3s, cut(change), least, false);
             return axis;
         }
         let free = outlet.positions.is_empty();

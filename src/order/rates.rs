@@ -82,10 +82,10 @@ impl Rates {
         })
     }
 
-    /// Least time that a change between two values needs by itself, s.
-    pub(super) fn seconds(&self, from: Value, to: Value) -> f64 {
+    /// Least time that a change between two values needs by itself, min.
+    pub(super) fn minutes(&self, from: Value, to: Value) -> f64 {
         let of = |rate: &Rate| match (rate.read(from), rate.read(to)) {
-            (Some(a), Some(b)) if rate.most > 0.0 => (b - a).abs() / rate.most * 60.0 * rate.window_min,
+            (Some(a), Some(b)) if rate.most > 0.0 => (b - a).abs() / rate.most * rate.window_min,
             _ => 0.0,
         };
         self.0.iter().map(of).fold(0.0, f64::max)

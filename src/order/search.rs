@@ -16,6 +16,11 @@ use super::works::{Value, Works, room_share};
 /// Nodes looked at for each standing that may be (choice): one standing is reached after any of its axes.
 const NODES_PER_STATE: usize = 4;
 
+/// Times nearer than this tell no two ways apart, min (choice).
+const TIME_MIN: f64 = 10.0;
+/// Temperatures nearer than this tell no two ways apart, C (choice).
+const ASTRAY_C: f64 = 0.1;
+
 /// What one way has over another, the first first. Whole numbers, so that sums have no round-off.
 #[derive(Debug, Clone, Copy, Default, PartialEq, Eq, PartialOrd, Ord)]
 pub(super) struct Cost {
@@ -24,9 +29,9 @@ pub(super) struct Cost {
     out_of_turn: u64,
     /// Movements.
     steps: u64,
-    /// Time that the changes would need, each by itself, s.
-    seconds: u64,
-    /// How far each place lies outside the temperatures now and wanted, summed, millionths of a degree.
+    /// Time that the changes would need, each by itself.
+    time: u64,
+    /// How far each place lies outside the temperatures now and wanted, summed.
     astray: u64,
 }
 
@@ -35,7 +40,7 @@ impl Cost {
         Self {
             out_of_turn: self.out_of_turn + other.out_of_turn,
             steps: self.steps + other.steps,
-            seconds: self.seconds + other.seconds,
+            time: self.time + other.time,
             astray: self.astray + other.astray,
         }
     }
@@ -114,18 +119,21 @@ struct Miss {
     by_rate: bool,
 }
 
-/// Nodes to be done and steps to be looked at, the cheapest first; of what is level that which moves the first of the
-/// site first.
+/// What a node or a step costs with all that is left, what is left of it, and which it is.
+type Queued = (Cost, Cost, Reverse<Vec<usize>>, usize, Option<usize>);
+
+/// Nodes to be done and steps to be looked at, the cheapest first; of what is level the one with least left, then that
+/// which moves the first of the site first.
 #[derive(Default)]
-struct Queue(BinaryHeap<Reverse<(Cost, Reverse<Vec<usize>>, usize, Option<usize>)>>);
+struct Queue(BinaryHeap<Reverse<Queued>>);
 
 impl Queue {
-    fn push(&mut self, cost: Cost, node: Node, axis: Option<usize>) {
-        self.0.push(Reverse((cost, Reverse(node.0), node.1, axis)));
+    fn push(&mut self, cost: Cost, left: Cost, node: Node, axis: Option<usize>) {
+        self.0.push(Reverse((cost, left, Reverse(node.0), node.1, axis)));
     }
 
     fn pop(&mut self) -> Option<(Node, Option<usize>)> {
-        self.0.pop().map(|Reverse((_, Reverse(places), last, axis))| ((places, last), axis))
+        self.0.pop().map(|Reverse((_, _, Reverse(places), last, axis))| ((places, last), axis))
     }
 }
 
@@ -143,8 +151,9 @@ impl Search<'_> {
         let mut tried: HashMap<(Vec<usize>, usize), Rc<Tried>> = HashMap::new();
         let mut reached: HashMap<Node, Reached> = HashMap::new();
         reached.insert(begin.clone(), Reached { cost: Cost::default(), by: None, done: false });
+        let (first, last) = (works.state(self.from).value, works.state(&self.standing(&goal)).value);
         let mut queue = Queue::default();
-        queue.push(self.left(&begin), begin, None);
+        queue.push(self.left(&begin).plus(self.needed(first, last)), self.left(&begin), begin, None);
         let mut nodes = 0_usize;
         let mut misses: Vec<Miss> = Vec::new();
         while let Some((node, axis)) = queue.pop() {
@@ -162,11 +171,17 @@ impl Search<'_> {
                     return Searched::TooMany;
                 }
                 // what a step costs at least is known before it is looked at
+                let so_far = cost.plus(self.needed(works.state(&self.standing(&node.0)).value, last));
                 for axis in (0..self.axes.len()).filter(|&a| node.0[a] < goal[a]) {
                     let mut next = node.clone();
                     (next.0[axis], next.1) = (node.0[axis] + 1, axis);
-                    let least = cost.plus(self.turn(&node, axis)).plus(self.left(&next));
-                    queue.push(least, node.clone(), Some(axis));
+                    let left = self.left(&next);
+                    queue.push(
+                        so_far.plus(self.turn(&node, axis)).plus(left),
+                        left,
+                        node.clone(),
+                        Some(axis),
+                    );
                 }
                 continue;
             };
@@ -189,7 +204,9 @@ impl Search<'_> {
             if reached.get(&next).is_none_or(|r| next_cost < r.cost) {
                 let by = Some((node.clone(), Leg { axis, from, taken: taken.clone() }));
                 reached.insert(next.clone(), Reached { cost: next_cost, by, done: false });
-                queue.push(next_cost.plus(self.left(&next)), next, None);
+                let after = works.state(&self.standing(&next.0)).value;
+                let left = self.left(&next);
+                queue.push(next_cost.plus(left).plus(self.needed(after, last)), left, next, None);
             }
         }
         Searched::None(self.blocks(&reached, &goal, &misses))
@@ -220,15 +237,21 @@ impl Search<'_> {
 
     /// What a step costs by what it does to the release.
     fn change(&self, taken: &Taken, before: Value) -> Cost {
-        let (mut value, mut seconds, mut astray) = (before, 0.0, 0.0);
+        let (mut value, mut spent, mut astray) = (before, Cost::default(), 0.0);
         for after in taken.pieces.iter().filter_map(|piece| piece.values.last()) {
-            seconds += self.judge.rates.map_or(0.0, |rates| rates.seconds(value, *after));
+            spent = spent.plus(self.needed(value, *after));
             value = *after;
         }
         if let (Some((a, b)), Some(t)) = (self.ends_c, value.temperature_c) {
             astray = (t - a.max(b)).max(a.min(b) - t).max(0.0);
         }
-        Cost { seconds: whole(seconds), astray: whole(1e6 * astray), ..Cost::default() }
+        Cost { astray: whole(astray / ASTRAY_C), ..spent }
+    }
+
+    /// The time that a change of the release needs by itself, at least.
+    fn needed(&self, from: Value, to: Value) -> Cost {
+        let minutes = self.judge.rates.map_or(0.0, |rates| rates.minutes(from, to));
+        Cost { time: whole(minutes / TIME_MIN), ..Cost::default() }
     }
 
     /// What is left to do from a node, at least.

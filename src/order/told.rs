@@ -2,7 +2,7 @@
 //!
 //! Methods: `docs/methods.md`, section 11.
 
-use crate::mix::limits::Check;
+use crate::mix::limits::{Check, Measure};
 
 use super::axes::Axis;
 use super::rates::Rates;
@@ -96,7 +96,9 @@ fn told(works: &mut Works, standing: &mut Standing, before: &Full, run: Run) -> 
     }
     let mut passes: Vec<Check> = Vec::new();
     run.passes.into_iter().for_each(|check| keep_worst(&mut passes, check));
-    nearest.retain(|c| c.room.is_finite() && !passes.iter().any(|p| key(p) == key(c)));
+    // gates counted are never near a count: they keep it or they do not
+    let near = |c: &Check| c.room.is_finite() && c.rule.unit() != Measure::Count;
+    nearest.retain(|c| near(c) && !passes.iter().any(|p| key(p) == key(c)));
     nearest.sort_by(|a, b| room_share(a).total_cmp(&room_share(b)));
     nearest.truncate(NEAREST);
     let step = Step {

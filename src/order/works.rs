@@ -220,10 +220,12 @@ pub(super) fn key(check: &Check) -> Key {
     (check.rule, check.of, check.item)
 }
 
-/// Room as a share of the bound, by which limits of several kinds are told apart (choice).
+/// Room as a share of the bound, by which limits of several kinds are told apart (choice); of a bound that is an
+/// elevation, or nothing, the room itself.
 pub(super) fn room_share(check: &Check) -> f64 {
     let bound = check.bound.abs();
-    if bound > 0.0 { check.room / bound } else { check.room }
+    let is_measure = bound > 0.0 && !matches!(check.rule, Rule::Dry | Rule::PoolWindow);
+    if is_measure { check.room / bound } else { check.room }
 }
 
 /// What crew and power would rather have does not hold up a change; everything else does (choice).

@@ -201,6 +201,19 @@ fn published_a_gate_that_may_not_move_under_flow_gets_its_stop() {
 }
 
 #[test]
+fn published_an_outlet_that_only_its_flow_moves_is_stopped_between_two_flows() {
+    let still = (
+        "flow: { max: 60 } }\n  - { name: Low",
+        "flow: { max: 60 }, moves_under_flow: false }\n  - { name: Low",
+    );
+    let (from, to) = ([(LOW, 1.0, 10.0), (SLUICE, 1.0, 10.0)], [(LOW, 1.0, 10.0), (SLUICE, 1.0, 30.0)]);
+    let (now, wanted) = (Set { direct: &from, ..Set::default() }, Set { direct: &to, ..Set::default() });
+    let found = Dam::new("", &[still]).usual(now, wanted).unwrap();
+    assert_eq!(moves(&found), [(Moved::Outlet(SLUICE), 0.0), (Moved::Outlet(SLUICE), 30.0)]);
+    assert_eq!((found.stops, found.steps[0].stop), (1, true));
+}
+
+#[test]
 fn published_a_well_of_one_open_gate_stops_to_change_it() {
     let dam = Dam::new("", &[("conduit: 2", "conduit: 2, max_open: 1")]);
     let found = dam.usual(N1_OPEN, N2_OPEN).unwrap();
