@@ -239,7 +239,7 @@ fn published_half_moved_gates_keep_limits_that_their_positions_keep() {
     let wanted = Set { direct: &both, ..Set::default() };
     let Err(NoOrder::Missing(stuck)) = dam.usual(shut, wanted) else { panic!("an order of none") };
     assert_eq!((stuck.check.rule, stuck.check.of), (Rule::AvoidOpening, Of::Outlet(CONE)));
-    assert_eq!(stuck.check.found, 0.25);
+    assert_abs_diff_eq!(stuck.check.found, 0.25);
     let words = NoOrder::Missing(stuck).words(&dam.site);
     assert!(words.contains("20 % to 40 % to be avoided (vibration)"), "{words}");
     let through = Manner { through_bands: true, ..Manner::default() };
@@ -292,7 +292,7 @@ fn published_an_outlet_starts_at_its_least_flow_at_once() {
     let (now, wanted) = (Set { direct: &from, ..Set::default() }, Set { direct: &to, ..Set::default() });
     let paced = |rate: f64| Dam::new(&format!("limits: {{ max_flow_change_per_hour: {rate} }}\n"), &[least]);
     let found = paced(8.0).usual(now, wanted).unwrap();
-    assert_eq!(stands(&found.steps[0]), 8.0);
+    assert_abs_diff_eq!(stands(&found.steps[0]), 8.0);
     assert_eq!(found.steps[0].passes.iter().map(|c| c.rule).collect::<Vec<_>>(), [Rule::FlowMin]);
     let Err(NoOrder::Impossible(stuck)) = paced(7.9).usual(now, wanted) else { panic!("not impossible") };
     assert_eq!((stuck.check.rule, stuck.check.found), (Rule::FlowChangePerHour, 8.0));

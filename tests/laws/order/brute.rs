@@ -180,7 +180,7 @@ fn law_an_order_is_found_where_any_way_of_steps_is_one() {
                 for parts in PARTS {
                     match exists(&case, parts) {
                         Some(yes) => {
-                            assert!(!yes, "case {seed}: there is one in {parts} parts; told {stuck:?}")
+                            assert!(!yes, "case {seed}: there is one in {parts} parts; told {stuck:?}");
                         }
                         None => left_out += 1,
                     }

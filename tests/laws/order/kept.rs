@@ -67,12 +67,15 @@ fn walked(case: &Case, order: &Order) {
     }
 }
 
+/// From when until when, min, a flow and a temperature leave the dam.
+type Held = (f64, f64, Option<(f64, f64)>);
+
 /// Within no window does the release after the steps, and before the first, move by more than it may.
 fn paced(case: &Case, order: &Order) {
     let limits = &case.site.limits;
     let flow = [limits.flow_change_m3s_per_hour, limits.flow_change_m3s_per_day];
     let warmth = [limits.temperature_change_c_per_hour, limits.temperature_change_c_per_day];
-    let held: Vec<(f64, f64, Option<(f64, f64)>)> = order
+    let held: Vec<Held> = order
         .steps
         .iter()
         .enumerate()
