@@ -131,8 +131,8 @@ fn limit(raw: &mut Raw, water: &Pool, (now, wanted): (&Asked, &Asked), kinds: Ki
     let open = |asked: &Asked, name: &str, raw: &Raw| {
         asked.open.iter().filter(|o| raw.outlets[o.0].well.as_deref() == Some(name)).count()
     };
-    for well in 0..raw.wells.len() {
-        let most = open(now, WELLS[well], raw).max(open(wanted, WELLS[well], raw)).max(1);
+    for (well, name) in WELLS.into_iter().enumerate().take(raw.wells.len()) {
+        let most = open(now, name, raw).max(open(wanted, name, raw)).max(1);
         raw.wells[well].max_open = dice.once_in(if tight { 1 } else { 3 }).then_some(most as f64);
         raw.wells[well].max_head_loss_m = dice.maybe(3, 0.2..4.0);
         raw.wells[well].min_flow_m3s = dice.maybe(3, 0.05..0.25).filter(|_| kinds.starts).map(|s| s * high);
