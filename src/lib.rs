@@ -4,6 +4,7 @@ pub mod cli;
 pub mod files;
 pub mod intake;
 pub mod mix;
+pub mod order;
 pub mod plot;
 pub mod problem;
 pub mod profile;

@@ -16,6 +16,8 @@ mod crest;
 mod levelling;
 #[path = "laws/mix/mod.rs"]
 mod mix;
+#[path = "laws/order/mod.rs"]
+mod order;
 #[path = "laws/rank/mod.rs"]
 mod rank;
 #[path = "laws/river/mod.rs"]

@@ -26,4 +26,4 @@ pub use levels::{Gate, Level, Seat, Setting, as_one, groups, levels, seat};
 pub use links::Links;
 pub use reach::{OutletState, outlet_states, reach_m};
 pub use standing::{Held, Part, TargetStanding, held, is_wish, standings};
-pub use wells::{Asked, WellState, port, resolve};
+pub use wells::{Asked, WellState, port, resolve, shared_out};

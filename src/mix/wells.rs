@@ -108,6 +108,18 @@ impl Asked {
     }
 }
 
+/// Flows of what is asked alone, for callers who try many settings: losses as assumed, and nothing told of wells whose
+/// flows are given.
+pub fn shared_out(
+    site: &Site,
+    column: &Column,
+    groups: &[Vec<usize>],
+    asked: &Asked,
+    pool_m: f64,
+) -> Setting {
+    at_loss(site, column, groups, asked, pool_m, ASSUMED_LOSS)
+}
+
 /// The same with `loss` for losses the site does not give.
 fn at_loss(
     site: &Site,

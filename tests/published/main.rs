@@ -10,6 +10,7 @@ mod gates;
 mod layering;
 mod mix;
 mod observed;
+mod order;
 mod outcome;
 mod pool;
 mod rejected;

@@ -3,7 +3,7 @@
 mod afar;
 mod brute;
 mod curves;
-mod dice;
+pub(crate) mod dice;
 mod laws;
 mod limits;
 mod mixes;
