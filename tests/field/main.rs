@@ -11,3 +11,5 @@ mod folder;
 mod learn;
 mod pairs;
 mod sonde;
+#[path = "../laws/learning/mod.rs"]
+mod learning;

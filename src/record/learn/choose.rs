@@ -69,13 +69,6 @@ pub(super) fn refusal(tried: &Tried) -> Option<String> {
             Effect::Bias | Effect::OxygenGain => "the days do not tell it".into(),
         });
     };
-    let out_of_range = |f: &f64| !(ZONE_FACTORS[0]..=ZONE_FACTORS[1]).contains(f);
-    if let (Effect::ZoneFactor, Some(factor)) = (effect, fit.values.first().filter(|f| out_of_range(f))) {
-        let [low, high] = ZONE_FACTORS;
-        return Some(format!(
-            "{factor:.2} lies outside {low:.2} to {high:.2}: it is not the thickness of zones that is off"
-        ));
-    }
     let nothing = effect.nothing();
     let holds =
         |interval: &Option<(f64, f64)>| interval.is_none_or(|(low, high)| (low..=high).contains(&nothing));
@@ -86,6 +79,13 @@ pub(super) fn refusal(tried: &Tried) -> Option<String> {
             [] => "a single stretch of days tells it".into(),
             some => format!("its 80 % interval, {}, holds {}", some.join("; "), effect.value_words(nothing)),
         });
+    }
+    let out_of_range = |f: &f64| !(ZONE_FACTORS[0]..=ZONE_FACTORS[1]).contains(f);
+    if let (Effect::ZoneFactor, Some(factor)) = (effect, fit.values.first().filter(|f| out_of_range(f))) {
+        let [low, high] = ZONE_FACTORS;
+        return Some(format!(
+            "{factor:.2} lies outside {low:.2} to {high:.2}: it is not the thickness of zones that is off"
+        ));
     }
     let plain: Vec<f64> = tried.days.iter().map(Seen::plain_error).collect();
     if after >= before || !better(&tried.days, &plain, &fit.held_out) {

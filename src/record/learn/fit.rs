@@ -2,7 +2,7 @@
 //!
 //! Methods: `docs/methods.md`, section 9.
 
-use crate::record::pairs::Curve;
+use crate::record::pairs::{Curve, ZONE_FACTORS};
 
 use super::scatter::{effective, student_90};
 
@@ -30,10 +30,10 @@ pub(super) struct Seen<'a> {
     pub(super) shape: Shape<'a>,
 }
 
-/// Half the stretch of zone factors over which a slope is taken (choice: a step of the curves).
-const SLOPE: f64 = 0.05;
-/// A zone factor is sought this far beyond its range, so that its interval is not cut at the end (choice).
-const BEYOND: f64 = 0.35;
+/// Places over the range of the zone factor at which the squares are looked at, and how often the best of them is
+/// drawn in by halves.
+const PLACES: u32 = 45;
+const HALVINGS: u32 = 30;
 /// A pivot smaller than this share of its column is none (choice): the values cannot be told apart.
 const LEAST_PIVOT: f64 = 1e-6;
 
@@ -51,10 +51,7 @@ impl Seen<'_> {
     fn pulls(&self, values: &[f64]) -> Vec<f64> {
         match &self.shape {
             Shape::Shift(pulls) => pulls.clone(),
-            Shape::Zone(curve) => values
-                .iter()
-                .map(|f| (curve.at(f + SLOPE).0 - curve.at(f - SLOPE).0) / (2.0 * SLOPE))
-                .collect(),
+            Shape::Zone(curve) => values.iter().map(|factor| curve.slope_c(*factor)).collect(),
         }
     }
 
@@ -95,7 +92,8 @@ pub(super) fn fit(days: &[Seen]) -> Option<Fit> {
         // one stretch alone does not show how it scatters
         (count > 1.5).then(|| {
             let squares: f64 = without.iter().map(|w| (w[i] - values[i]).powi(2)).sum();
-            let half = student_90(count - 1.0) * ((count - 1.0) / count * squares).sqrt();
+            let told_by = told.iter().filter(|t| **t > 0.0).count() as f64;
+            let half = student_90(count - 1.0) * ((told_by - 1.0) / told_by * squares).sqrt();
             (values[i] - half, values[i] + half)
         })
     };
@@ -150,35 +148,35 @@ fn shift<'a>(days: impl Iterator<Item = &'a Seen<'a>>, count: usize) -> Option<V
     Some(values)
 }
 
-/// The zone factor: on each straight piece of the curves the least squares are known, and the least of all is taken.
+/// The zone factor of least squares: the best of places over its range, drawn in; beyond the range, where the curves
+/// go straight on, the squares are a parabola with a known least.
 fn zone<'a>(days: impl Iterator<Item = &'a Seen<'a>> + Clone) -> Option<f64> {
-    let curves = |day: &'a Seen<'a>| match day.shape {
-        Shape::Zone(curve) => Some((day, curve)),
-        Shape::Shift(_) => None,
-    };
-    let pieces = curves(days.clone().next()?)?.1.pieces().count();
-    let mut best: Option<(f64, f64)> = None;
-    for piece in 0..pieces {
-        let (mut ends, mut sums) = ([0.0; 2], [0.0_f64; 3]);
-        for (day, curve) in days.clone().filter_map(curves) {
-            let (factors, [a, b]) = curve.pieces().nth(piece)?;
-            ends = factors;
-            let error = day.measured - a;
-            let add = [error * error, error * (b - a), (b - a) * (b - a)];
-            sums.iter_mut().zip(add).for_each(|(sum, term)| *sum += day.weight * term);
-        }
-        let [square, cross, slope] = sums;
-        if slope <= 0.0 {
-            continue;
-        }
-        let wide = ends[1] - ends[0];
-        let low = if piece == 0 { -BEYOND / wide } else { 0.0 };
-        let high = if piece + 1 == pieces { 1.0 + BEYOND / wide } else { 1.0 };
-        let share = (cross / slope).clamp(low, high);
-        let left = square - 2.0 * share * cross + share * share * slope;
-        if best.is_none_or(|b| left < b.0) {
-            best = Some((left, ends[0] + share * wide));
+    let squares = |factor: f64| days.clone().map(|day| day.weight * day.error(&[factor]).powi(2)).sum::<f64>();
+    let [low, high] = ZONE_FACTORS;
+    let mut step = (high - low) / f64::from(PLACES);
+    let places = (0..=PLACES).map(|i| low + step * f64::from(i)).map(|factor| (squares(factor), factor));
+    let mut best = places.reduce(|a, b| if b.0 < a.0 { b } else { a })?;
+    for _ in 0..HALVINGS {
+        step *= 0.5;
+        for factor in [best.1 - step, best.1 + step].map(|factor| factor.clamp(low, high)) {
+            let there = squares(factor);
+            if there < best.0 {
+                best = (there, factor);
+            }
         }
     }
-    best.map(|b| b.1)
+    // an interval cut at the end of the range would look surer than it is
+    for (end, outward) in [(low, -1.0), (high, 1.0)] {
+        let mut sums = [0.0_f64; 2];
+        for day in days.clone() {
+            let pull = day.pulls(&[end]).into_iter().sum::<f64>();
+            sums[0] += day.weight * pull * day.error(&[end]);
+            sums[1] += day.weight * pull * pull;
+        }
+        let by = sums[0] / sums[1];
+        if by * outward > 0.0 && squares(end + by) < best.0 {
+            best = (squares(end + by), end + by);
+        }
+    }
+    best.1.is_finite().then_some(best.1)
 }

@@ -9,19 +9,39 @@ use crate::withdrawal::CrestForm;
 
 /// Range of the zone factor that is learned (choice: that of the members of the band).
 pub const ZONE_FACTORS: [f64; 2] = [0.70, 1.15];
-/// Between two factors that a curve is computed for (choice).
-const STEP: f64 = 0.05;
-/// Factors that a curve is computed for.
-const POINTS: usize = 10;
-/// Which of them is 1, the zones as published.
-const PUBLISHED: usize = 6;
-
-/// Release with zones thinner and thicker than published: straight between the factors it was computed for, and
-/// straight on beyond them.
+/// Release with zones thinner and thicker than published: a parabola through those of the least factor, of 1 and of
+/// the greatest, and straight on beyond these.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Curve {
-    /// Temperature (C) and oxygen below the dam (mg/L) at each factor.
-    points: [(f64, Option<f64>); POINTS],
+    /// Temperature, C.
+    temperature_c: Parabola,
+    /// Oxygen below the dam, mg/L; `None` where any of the three is unknown.
+    oxygen_mg_l: Option<Parabola>,
+}
+
+/// Middle, slope and bend about the zones as published.
+#[derive(Debug, Clone, Copy, PartialEq)]
+struct Parabola([f64; 3]);
+
+impl Parabola {
+    /// Through the values at the least factor, at 1 and at the greatest.
+    fn through([low, middle, high]: [f64; 3]) -> Self {
+        let [a, b] = ZONE_FACTORS.map(|factor| factor - 1.0);
+        let slopes = [(low - middle) / a, (high - middle) / b];
+        let bend = (slopes[1] - slopes[0]) / (b - a);
+        Self([middle, slopes[0] - bend * a, bend])
+    }
+
+    fn at(self, factor: f64) -> f64 {
+        let held = factor.clamp(ZONE_FACTORS[0], ZONE_FACTORS[1]);
+        let [middle, slope, bend] = self.0;
+        let x = held - 1.0;
+        middle + x * (slope + x * bend) + (factor - held) * self.slope(held)
+    }
+
+    fn slope(self, factor: f64) -> f64 {
+        self.0[1] + 2.0 * self.0[2] * (factor.clamp(ZONE_FACTORS[0], ZONE_FACTORS[1]) - 1.0)
+    }
 }
 
 impl Curve {
@@ -40,28 +60,26 @@ impl Curve {
             Some((drawn, release))
         };
         let (drawn, published) = at(1.0)?;
-        let mut points = [(published.temperature_c, published.oxygen_below_mg_l); POINTS];
-        for (i, point) in points.iter_mut().enumerate().filter(|(i, _)| *i != PUBLISHED) {
-            let release = at(ZONE_FACTORS[0] + STEP * i as f64)?.1;
-            *point = (release.temperature_c, release.oxygen_below_mg_l);
-        }
-        Some((Self { points }, drawn, published))
+        let [low, high] = [at(ZONE_FACTORS[0])?.1, at(ZONE_FACTORS[1])?.1];
+        let three = [&low, &published, &high];
+        let oxygen = three.map(|release| release.oxygen_below_mg_l);
+        let curve = Self {
+            temperature_c: Parabola::through(three.map(|release| release.temperature_c)),
+            oxygen_mg_l: match oxygen {
+                [Some(low), Some(middle), Some(high)] => Some(Parabola::through([low, middle, high])),
+                _ => None,
+            },
+        };
+        Some((curve, drawn, published))
     }
 
     /// Temperature (C) and oxygen (mg/L) at a factor.
     pub fn at(&self, factor: f64) -> (f64, Option<f64>) {
-        let place = (factor - ZONE_FACTORS[0]) / STEP;
-        let below = (1..POINTS - 1).take_while(|&i| i as f64 <= place).count();
-        let (a, b) = (self.points[below], self.points[below + 1]);
-        let share = place - below as f64;
-        let between = |a: f64, b: f64| a + share * (b - a);
-        (between(a.0, b.0), a.1.zip(b.1).map(|(a, b)| between(a, b)))
+        (self.temperature_c.at(factor), self.oxygen_mg_l.map(|oxygen| oxygen.at(factor)))
     }
 
-    /// Its straight pieces: the factors at their ends and the temperatures there, C.
-    pub(in crate::record) fn pieces(&self) -> impl Iterator<Item = ([f64; 2], [f64; 2])> {
-        let factor = |i: usize| ZONE_FACTORS[0] + STEP * i as f64;
-        let pieces = self.points.windows(2).enumerate();
-        pieces.map(move |(i, pair)| ([factor(i), factor(i + 1)], [pair[0].0, pair[1].0]))
+    /// How the temperature changes with the factor, C.
+    pub fn slope_c(&self, factor: f64) -> f64 {
+        self.temperature_c.slope(factor)
     }
 }

@@ -107,8 +107,8 @@ impl Pool {
             bed_c: luck.between(5.0, 8.0),
             surface_c: luck.between(17.0, 25.0),
             middle_m: luck.between(34.0, 42.0),
-            thick_m: luck.between(2.0, 5.0),
-            drift_m: luck.between(-0.02, 0.02),
+            thick_m: luck.between(2.0, 6.0),
+            drift_m: luck.between(-0.01, 0.01),
         }
     }
 
@@ -143,6 +143,12 @@ impl Pool {
         };
         Profile::build(&raw, site, None).0.unwrap()
     }
+}
+
+/// A cast of a layered pool at rest.
+pub(super) fn still(site: &Site, date: NaiveDate) -> Profile {
+    Pool { bed_c: 6.0, surface_c: 20.0, middle_m: 38.0, thick_m: 3.0, drift_m: 0.0 }
+        .profile(site, "still.csv", date, 0, 0.0, 0.0)
 }
 
 /// A season: its true water and settings by day, and the pairs computed from its casts.
@@ -182,14 +188,14 @@ impl Season {
         }
         let mut season = Self { site, days, pairs: Vec::new() };
         let gauge = season.gauge(season.truth(Hidden::Nothing));
-        let given = |((date, setting, _), cast): (&(NaiveDate, Setting, Profile), &usize)| Day {
+        let given = season.days.iter().zip(&newest).map(|((date, setting, _), cast)| Day {
             date: *date,
             setting: Some(setting),
             profile: casts.get(*cast),
             changed: false,
             event: None,
-        };
-        let given: Vec<Day> = season.days.iter().zip(&newest).map(given).collect();
+        });
+        let given: Vec<Day> = given.collect();
         season.pairs = pairs(&season.site, &given, &gauge, &|_| ControlFlow::Continue(())).unwrap().pairs;
         season
     }
@@ -257,7 +263,7 @@ impl Season {
 
 fn some_setting(luck: &mut Luck, blends: bool) -> Setting {
     let level = luck.below(3) as usize;
-    let flow_m3s = luck.between(15.0, 60.0);
+    let flow_m3s = luck.between(60.0, 240.0);
     let gate = |outlet, share: f64| Gate { outlet, opening: 1.0, flow_m3s: share * flow_m3s };
     if blends && luck.below(2) == 0 {
         let share = luck.between(0.3, 0.7);
