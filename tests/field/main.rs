@@ -11,5 +11,3 @@ mod folder;
 mod learn;
 mod pairs;
 mod sonde;
-#[path = "../laws/learning/mod.rs"]
-mod learning;

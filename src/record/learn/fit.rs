@@ -151,7 +151,8 @@ fn shift<'a>(days: impl Iterator<Item = &'a Seen<'a>>, count: usize) -> Option<V
 /// The zone factor of least squares: the best of places over its range, drawn in; beyond the range, where the curves
 /// go straight on, the squares are a parabola with a known least.
 fn zone<'a>(days: impl Iterator<Item = &'a Seen<'a>> + Clone) -> Option<f64> {
-    let squares = |factor: f64| days.clone().map(|day| day.weight * day.error(&[factor]).powi(2)).sum::<f64>();
+    let squares =
+        |factor: f64| days.clone().map(|day| day.weight * day.error(&[factor]).powi(2)).sum::<f64>();
     let [low, high] = ZONE_FACTORS;
     let mut step = (high - low) / f64::from(PLACES);
     let places = (0..=PLACES).map(|i| low + step * f64::from(i)).map(|factor| (squares(factor), factor));

@@ -4,14 +4,14 @@
 
 use chrono::NaiveDate;
 
-/// Shortest stretch, days, where casts follow each other faster (choice): a week, in which the errors of gauges and
-/// the heave of layers have mostly forgotten where they were.
-const LEAST_STRETCH_DAYS: i64 = 7;
+/// Shortest stretch, days, where casts follow each other faster (choice): in two weeks the errors of gauges and the
+/// heave of layers have mostly forgotten where they were.
+const LEAST_STRETCH_DAYS: i64 = 14;
 /// The 90 % point of the normal distribution (standard).
 pub(super) const NORMAL_90: f64 = 1.281_551_565_545;
 
 /// The stretch of each day, counted from 0, by dates in order and their casts: a new one begins with another cast,
-/// a week or more after the last one began.
+/// two weeks or more after the last one began.
 pub(super) fn stretches<'a>(days: impl Iterator<Item = (NaiveDate, &'a str)>) -> Vec<usize> {
     let mut last: Option<(NaiveDate, &str, usize)> = None;
     let one = |(date, cast): (NaiveDate, &'a str)| {
@@ -72,7 +72,7 @@ mod tests {
         let of = |days: &[(u32, &str)]| stretches(days.iter().map(|(day, cast)| (date(*day), *cast)));
         // one cast is one stretch however long; a cast each day does not make each day one
         assert_eq!(of(&[(1, "a"), (9, "a"), (20, "a"), (21, "b"), (22, "b")]), [0, 0, 0, 1, 1]);
-        assert_eq!(of(&[(1, "a"), (2, "b"), (7, "c"), (8, "d"), (9, "e"), (16, "f")]), [0, 0, 0, 1, 1, 2]);
+        assert_eq!(of(&[(1, "a"), (7, "b"), (14, "c"), (15, "d"), (20, "e"), (29, "f")]), [0, 0, 0, 1, 1, 2]);
         assert!(of(&[]).is_empty());
     }
 

