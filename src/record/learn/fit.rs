@@ -110,7 +110,7 @@ pub(super) fn fit(days: &[Seen]) -> Option<Fit> {
 /// The values of least weighted squares. A value that no day pulls at stays 0.
 fn solve<'a>(days: impl Iterator<Item = &'a Seen<'a>> + Clone) -> Option<Vec<f64>> {
     match days.clone().next()?.shape {
-        Shape::Zone(_) => zone(days).map(|factor| vec![factor]),
+        Shape::Zone(_) => zone(&days).map(|factor| vec![factor]),
         Shape::Shift(ref pulls) => shift(days, pulls.len()),
     }
 }
@@ -128,14 +128,14 @@ fn shift<'a>(days: impl Iterator<Item = &'a Seen<'a>>, count: usize) -> Option<V
         }
     }
     for i in 0..count {
-        let own = rows[i][i];
-        for j in i + 1..count {
-            let share = if own > 0.0 { rows[j][i] / own } else { 0.0 };
-            let before = rows[j][j];
-            for k in i..=count {
-                rows[j][k] -= share * rows[i][k];
+        let pivot = rows[i].clone();
+        for (j, row) in rows.iter_mut().enumerate().skip(i + 1) {
+            let share = if pivot[i] > 0.0 { row[i] / pivot[i] } else { 0.0 };
+            let before = row[j];
+            for (cell, of) in row.iter_mut().zip(&pivot).skip(i) {
+                *cell -= share * of;
             }
-            if before > 0.0 && rows[j][j] < LEAST_PIVOT * before {
+            if before > 0.0 && row[j] < LEAST_PIVOT * before {
                 return None;
             }
         }
@@ -150,7 +150,7 @@ fn shift<'a>(days: impl Iterator<Item = &'a Seen<'a>>, count: usize) -> Option<V
 
 /// The zone factor of least squares: the best of places over its range, drawn in; beyond the range, where the curves
 /// go straight on, the squares are a parabola with a known least.
-fn zone<'a>(days: impl Iterator<Item = &'a Seen<'a>> + Clone) -> Option<f64> {
+fn zone<'a>(days: &(impl Iterator<Item = &'a Seen<'a>> + Clone)) -> Option<f64> {
     let squares =
         |factor: f64| days.clone().map(|day| day.weight * day.error(&[factor]).powi(2)).sum::<f64>();
     let [low, high] = ZONE_FACTORS;

@@ -14,6 +14,9 @@ const LEAST_DEVIATION: f64 = 0.1;
 /// A level is told by no less flow than that of so many whole days (choice).
 const LEAST_LEVEL_DAYS: f64 = 3.0;
 
+/// Measured, computed, and the band of the latter.
+type Both = (f64, f64, (f64, f64));
+
 /// One day with both.
 struct Side<'a> {
     pair: &'a Pair,
@@ -38,14 +41,13 @@ impl<'a> Sides<'a> {
         Self::of(pairs, |pair| Some((pair.measured_mg_l?, pair.curve.at(zone_factor).1?, pair.band_mg_l?)))
     }
 
-    fn of(pairs: &[&'a Pair], read: impl Fn(&Pair) -> Option<(f64, f64, (f64, f64))>) -> Self {
+    fn of(pairs: &[&'a Pair], read: impl Fn(&Pair) -> Option<Both>) -> Self {
         let with: Vec<(&'a Pair, _)> = pairs.iter().filter_map(|pair| Some((*pair, read(pair)?))).collect();
         let places = stretches(with.iter().map(|(pair, _)| (pair.date, pair.cast.as_str())));
-        let one =
-            |((pair, (measured, plain, band)), stretch): ((&'a Pair, (f64, f64, (f64, f64))), usize)| {
-                let deviation = (0.5 * (band.1 - band.0) / NORMAL_90).max(LEAST_DEVIATION);
-                Side { pair, stretch, measured, plain, deviation }
-            };
+        let one = |((pair, (measured, plain, band)), stretch): ((&'a Pair, Both), usize)| {
+            let deviation = (0.5 * (band.1 - band.0) / NORMAL_90).max(LEAST_DEVIATION);
+            Side { pair, stretch, measured, plain, deviation }
+        };
         Self(with.into_iter().zip(places).map(one).collect())
     }
 

@@ -36,6 +36,17 @@ pub(super) enum Hidden {
     Zone(f64),
 }
 
+impl Hidden {
+    pub(super) fn name(self) -> &'static str {
+        match self {
+            Self::Nothing => "nothing",
+            Self::Bias(_) => "bias",
+            Self::Leak(..) => "leak",
+            Self::Zone(_) => "zone factor",
+        }
+    }
+}
+
 /// Draws from the usual distributions.
 pub(super) struct Luck(Pcg64Mcg);
 

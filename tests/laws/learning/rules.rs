@@ -85,10 +85,10 @@ fn law_only_the_window_is_looked_at() {
     let all = learn(season.site(), &pairs, WINDOW_DAYS);
     // what was three years ago has no part in it
     let mut older = pairs.clone();
-    older.iter_mut().for_each(|pair| {
+    for pair in &mut older {
         pair.date = pair.date - Days::new(1100);
         pair.measured_c = pair.measured_c.map(|c| c + 5.0);
-    });
+    }
     older.extend(pairs.iter().cloned());
     assert_eq!(learn(season.site(), &older, WINDOW_DAYS).candidates, all.candidates);
     assert_ne!(learn(season.site(), &older, 2000).candidates, all.candidates);
@@ -129,7 +129,9 @@ fn scenario_a_mixed_pool_names_the_sensor() {
     assert_eq!(single.sensor, Sensor::Either);
     // water in layers explains itself otherwise
     let mut layered = mixed([0.9; 4]);
-    layered.iter_mut().for_each(|pair| pair.cast_c = (6.0, 15.0));
+    for pair in &mut layered {
+        pair.cast_c = (6.0, 15.0);
+    }
     assert_eq!(learn(&site(), &layered, WINDOW_DAYS).suspect, None);
 }
 
