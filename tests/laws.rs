@@ -12,6 +12,8 @@ mod columns;
 mod continuity;
 #[path = "laws/crest.rs"]
 mod crest;
+#[path = "laws/learning/mod.rs"]
+mod learning;
 #[path = "laws/levelling.rs"]
 mod levelling;
 #[path = "laws/mix/mod.rs"]

@@ -259,8 +259,8 @@ fn band(mut values: Vec<f64>) -> Option<(f64, f64)> {
     Some((quantile(&values, 0.1)?, quantile(&values, 0.9)?))
 }
 
-/// Quantile of sorted values, linear between order statistics.
-fn quantile(sorted: &[f64], share: f64) -> Option<f64> {
+/// Quantile of sorted values, linear between order statistics; `None` of none.
+pub fn quantile(sorted: &[f64], share: f64) -> Option<f64> {
     let last = sorted.len().checked_sub(1)?;
     let place = share * last as f64;
     let below = (0..=last).take_while(|&i| i as f64 <= place).last()?;

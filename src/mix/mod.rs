@@ -16,7 +16,7 @@ pub mod split;
 mod standing;
 mod wells;
 
-pub use band::{GREATEST_LOSS, LEAST_LOSS, Member, Perturbed, Spread, members};
+pub use band::{GREATEST_LOSS, LEAST_LOSS, Member, Perturbed, Spread, members, quantile};
 pub use beware::LOW_OXYGEN_SHARE;
 pub use blend::{Blend, Drawn, blend, draw_levels, overlapping, release, release_joined};
 pub use conflict::{Conflict, conflicts};

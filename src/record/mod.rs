@@ -2,10 +2,19 @@
 //!
 //! Methods: `docs/methods.md`, section 9.
 
+mod learn;
 pub mod line;
 mod log;
+mod pairs;
+mod scores;
 
+pub use learn::{
+    Candidate, Effect, Figure, LEAST_DAYS, LEAST_STRETCHES, Learned, Learning, Sensor, Suspect, Verdict,
+    WINDOW_DAYS, learn,
+};
 pub use log::{Decided, Log, Placed};
+pub use pairs::{Curve, Day, Left, Pair, Paired, Why, ZONE_FACTORS, pairs};
+pub use scores::{Class, Misfit, Row, Score, Scores, scores};
 
 /// How the figures are made: told with every answer, and written down with every decision.
-pub const METHOD: &str = "point-sink withdrawal (WES H-73-4, E-87-2), samples as measured, levelled density; 10-90 % of seeded perturbed cases";
+pub const METHOD: &str = "point-sink withdrawal (Bohan and Grace 1973, with the withdrawal angle and a factor where surface or bed bounds the zone), samples as measured, levelled density; 10-90 % of seeded perturbed cases";

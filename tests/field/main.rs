@@ -8,5 +8,6 @@
 
 mod binary;
 mod folder;
+mod learn;
 mod pairs;
 mod sonde;

@@ -78,7 +78,7 @@ impl Pair {
     }
 }
 
-fn site(folder: &Path) -> Site {
+pub(crate) fn site(folder: &Path) -> Site {
     let table = rows::<TableRow>(folder, "area_capacity_2017.csv", 581)
         .iter()
         .map(|row| site::RawRow {
@@ -107,7 +107,14 @@ fn site(folder: &Path) -> Site {
     sound(checked, &problems)
 }
 
-fn pair(site: &Site, row: &PairRow, casts: &[CastRow], place: Place, conductance: bool) -> Pair {
+/// The cast of a pair.
+pub(crate) fn profile(
+    site: &Site,
+    row: &PairRow,
+    casts: &[CastRow],
+    place: Place,
+    conductance: bool,
+) -> Profile {
     let cast: Vec<RawRow> = casts
         .iter()
         .enumerate()
@@ -129,12 +136,27 @@ fn pair(site: &Site, row: &PairRow, casts: &[CastRow], place: Place, conductance
         rows: cast,
     };
     let (profile, problems) = Profile::build(&raw, site, None);
-    let profile = sound(profile, &problems);
-    let released = NaiveDateTime::parse_from_str(&row.release_datetime, "%Y-%m-%d %H:%M:%S").unwrap().date();
+    sound(profile, &problems)
+}
+
+impl PairRow {
+    /// The day of the release.
+    pub(crate) fn released(&self) -> NaiveDate {
+        NaiveDateTime::parse_from_str(&self.release_datetime, "%Y-%m-%d %H:%M:%S").unwrap().date()
+    }
+
+    /// What was released, all through the intake.
+    pub(crate) fn setting(&self) -> Setting {
+        let flow_m3s = Unit::CubicFootPerSecond.to_si(self.power_cfs);
+        Setting::of(vec![Gate { outlet: 0, opening: 1.0, flow_m3s }])
+    }
+}
+
+fn pair(site: &Site, row: &PairRow, casts: &[CastRow], place: Place, conductance: bool) -> Pair {
+    let profile = profile(site, row, casts, place, conductance);
+    let (released, setting) = (row.released(), row.setting());
     let age_days = (released - row.profile_date).num_days().unsigned_abs();
     let perturbed = Perturbed::new(site, &profile, Some(f64::from(u32::try_from(age_days).unwrap())));
-    let flow_m3s = Unit::CubicFootPerSecond.to_si(row.power_cfs);
-    let setting = Setting::of(vec![Gate { outlet: 0, opening: 1.0, flow_m3s }]);
     let mix = judge(site, &profile, &perturbed, &setting, released).unwrap();
     Pair {
         trip: row.trip_id.clone(),

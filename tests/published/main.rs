@@ -15,6 +15,7 @@ mod outcome;
 mod pool;
 mod rejected;
 mod river;
+mod scores;
 mod season;
 mod series;
 mod series_pandas;
