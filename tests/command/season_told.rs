@@ -207,6 +207,7 @@ fn scenario_a_pool_above_full_is_told_by_check_and_at_the_head_of_the_season() {
     let answer = season(&folder, &[]);
     let above: Vec<&Value> =
         list(&answer["days"]).iter().filter(|day| number(&day["pool_m"]) > 60.2 + 0.01).collect();
+    assert!(kinds(&answer).contains(&"plan-above-full"));
     let text = in_words(&folder, &[]);
     let first = above[0]["date"].as_str().unwrap();
     let highest = above.iter().map(|day| number(&day["pool_m"])).fold(0.0, f64::max);

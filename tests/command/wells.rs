@@ -348,3 +348,24 @@ fn scenario_openings_alone_are_held_through_the_blocks_of_the_day() {
     assert_eq!(day["targets"][0]["basis"], "blocks");
     assert!(peak["day"].is_null());
 }
+
+#[test]
+fn scenario_flows_that_the_well_does_not_make_of_its_gates_are_told_with_the_setting_now() {
+    let folder = folder(SITE);
+    let rank = |now: &[&str]| -> Value {
+        let asked = ["rank", folder.named(), "--release", "25", "--step", "20%", "--top", "1", "--json"];
+        run(&[&asked[..], now].concat()).json()
+    };
+    let told = rank(&["--now", "N1=20", "--now", "N3=5"]);
+    let made = mix(SITE, "--set North=25 --open N1=100% --open N3=100%");
+    let [n1, n3] = ["N1", "N3"].map(|gate| number(&made["set"][gate]));
+    assert!((n1 - 20.0).abs() > 2.0, "the well shares out otherwise: {n1}");
+    let words = said(&told, "now-split").unwrap();
+    let gates = format!("N1 passes {n1:.2} m3/s, not 20.00 m3/s, N3 passes {n3:.2} m3/s, not 5.00 m3/s.");
+    assert!(words.contains(&gates), "{gates} {words}");
+    // what the well makes is not told of, nor is a gate alone
+    for now in [[format!("N1={n1:.3}"), format!("N3={n3:.3}")], ["N1=25".into(), "Sluice=4".into()]] {
+        let told = rank(&["--now", &now[0], "--now", &now[1]]);
+        assert_eq!(said(&told, "now-split"), None);
+    }
+}

@@ -20,6 +20,7 @@ const SEEN_C: f64 = 0.1;
 pub(super) fn notes(context: &Context, of: &Understood) -> Vec<Problem> {
     let mut out = of_plans(of);
     out.extend(before_the_plan(of));
+    out.extend(of.plan.above_full(context.site(), of.begins, context.profile.pool_m));
     out.extend(schedule(of));
     out.extend(years(context, of));
     out.extend(of.over.iter().map(|plan| {
