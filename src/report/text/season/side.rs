@@ -16,7 +16,7 @@ use super::short;
 /// Columns of the names together, and of each figure.
 const NAME: usize = 34;
 const CELLS: [usize; 6] = [8, 8, 6, 8, 7, 6];
-const MORE: [usize; 4] = [12, 8, 13, 10];
+const MORE: [usize; 4] = [11, 7, 13, 12];
 
 /// Columns that a plan has at least.
 const LEAST: usize = 8;
