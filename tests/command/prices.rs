@@ -44,12 +44,14 @@ fn by_hand(answer: &Value, days_outside: impl Fn(&[&str]) -> i64) {
     let base = days_outside(&NOW);
     let prices = list(&answer["season"]["mixes"]);
     assert_eq!(prices.len(), 2);
+    let mut told = 0;
     for (mix, price) in list(&answer["mixes"]).iter().zip(prices) {
         let gates = gates(mix);
         let more = days_outside(&gates.iter().map(String::as_str).collect::<Vec<_>>()) - base;
-        assert_ne!(more, 0, "a price that can be told wrong");
         assert_eq!(price["days_outside_more"]["days"], more, "{mix}");
+        told += usize::from(more != 0);
     }
+    assert!(told > 0, "a price that can be told wrong");
 }
 
 #[test]
