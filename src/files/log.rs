@@ -26,7 +26,7 @@ pub const LOG_CAP: u64 = 256 << 20;
 /// How long another writer is waited for (choice: one needs milliseconds).
 const PATIENCE: Duration = Duration::from_secs(3);
 /// How long between two tries (choice).
-const BETWEEN: Duration = Duration::from_millis(10);
+const BETWEEN: Duration = Duration::from_millis(1);
 
 /// A log as read.
 #[derive(Debug, Clone, Default, PartialEq)]

@@ -59,6 +59,8 @@ fn writer_of_the_trials() {
         let id = log_event(Path::new(path), &padded(&text)).unwrap();
         // one write, so that whoever reads it reads it whole
         out.write_all(format!("confirmed {id} {text}\n").as_bytes()).unwrap();
+        // the other has its turn
+        sleep(Duration::from_micros(500));
     }
 }
 
