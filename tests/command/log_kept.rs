@@ -48,15 +48,12 @@ fn padded(text: &str) -> String {
     format!("{text} {}", "water ".repeat(700))
 }
 
-#[test]
-#[ignore = "the writer of the trials, which start it"]
-fn writer_of_the_trials() {
-    let told = std::env::var(WRITES).unwrap();
-    let (who, path) = told.split_once(':').unwrap();
+/// Logs line after line, and confirms each once it is there.
+fn writes(who: &str, path: &Path, count: usize) {
     let mut out = std::io::stdout();
-    for count in 0..MOST {
+    for count in 0..count {
         let text = format!("{who}-{count}");
-        let id = log_event(Path::new(path), &padded(&text)).unwrap();
+        let id = log_event(path, &padded(&text)).unwrap();
         // one write, so that whoever reads it reads it whole
         out.write_all(format!("confirmed {id} {text}\n").as_bytes()).unwrap();
         // the other has its turn
@@ -64,9 +61,30 @@ fn writer_of_the_trials() {
     }
 }
 
+/// The writer of the trials, which start it with the name of their log; by itself it has one of its own.
+#[test]
+fn scenario_a_writer_that_nobody_stops_writes_every_line() {
+    if let Ok(told) = std::env::var(WRITES) {
+        let (who, path) = told.split_once(':').unwrap();
+        return writes(who, Path::new(path), MOST);
+    }
+    let folder = tempfile::tempdir().unwrap();
+    let path = folder.path().join("log.jsonl");
+    writes("alone", &path, 5);
+    let there = read(&path).unwrap();
+    let texts: Vec<String> = there.log.events().into_iter().map(|event| event.text.clone()).collect();
+    let all: Vec<String> = (0..5).map(|count| padded(&format!("alone-{count}"))).collect();
+    assert_eq!((texts, there.problems), (all, vec![]));
+}
+
 fn writer(path: &Path, who: &str) -> Child {
     Command::new(std::env::current_exe().unwrap())
-        .args(["--exact", "log_kept::writer_of_the_trials", "--ignored", "--nocapture", "--test-threads=1"])
+        .args([
+            "--exact",
+            "log_kept::scenario_a_writer_that_nobody_stops_writes_every_line",
+            "--nocapture",
+            "--test-threads=1",
+        ])
         .env(WRITES, format!("{who}:{}", path.display()))
         .stdout(Stdio::piped())
         .stderr(Stdio::null())
