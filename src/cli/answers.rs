@@ -144,7 +144,7 @@ pub(super) fn answer(cli: &Cli, clock: DateTime<Utc>, progress: Progress) -> Res
                 Some(logged)
             } else if let Some(text) = &asked.event {
                 Some(tasks::log::event(&context, &asked.event(text), clock)?)
-            } else if let Some(word) = asked.idle() {
+            } else if let Some(word) = asked.idle(setting) {
                 let words = format!("{word} goes with --decide, --amend NUMBER or --event TEXT");
                 return Err(Failure::Usage(words).into());
             } else {

@@ -45,12 +45,14 @@ impl Entry {
     }
 
     /// What was typed that means nothing without something to log.
-    pub(super) fn idle(&self) -> Option<&'static str> {
+    pub(super) fn idle(&self, setting: &Setting) -> Option<&'static str> {
         let typed = [
             (self.by.is_some(), "--by"),
             (self.why.is_some(), "--why"),
             (self.until.is_some(), "--until"),
             (self.trigger.is_some(), "--trigger"),
+            (!setting.set.is_empty(), "--set"),
+            (!setting.open.is_empty(), "--open"),
         ];
         typed.into_iter().find_map(|(is, name)| is.then_some(name))
     }

@@ -129,7 +129,7 @@ fn scenario_an_event_is_logged_with_its_days() {
 fn scenario_what_cannot_be_logged_is_refused_and_nothing_is_written() {
     let folder = Folder::usual();
     let site = folder.named();
-    let refused: [(&[&str], i32, &str); 8] = [
+    let refused: [(&[&str], i32, &str); 9] = [
         (&["log", site, "--decide", "--why", "w"], 2, "the log needs --by NAME"),
         (&["log", site, "--decide", "--by", "b"], 2, "a decision needs --why TEXT"),
         (&["log", site, "--decide", "--by", " ", "--why", "w"], 2, "--by is empty"),
@@ -141,6 +141,7 @@ fn scenario_what_cannot_be_logged_is_refused_and_nothing_is_written() {
         (&["log", site, "--decide", "--by", "b", "--why", "w", "--set", "N9=3"], 2, "N9"),
         (&["log", site, "--decide", "--by", "b", "--why", "w", "--set", "N1=9000"], 3, "capacity"),
         (&["log", site, "--by", "b"], 2, "--by goes with --decide"),
+        (&["log", site, "--set", "N1=20"], 2, "--set goes with --decide"),
         (&["log", "ashlar", "--decide", "--by", "b", "--why", "w"], 3, "it has no log"),
     ];
     for (arguments, code, words) in refused {
