@@ -193,14 +193,17 @@ impl Context {
         let sources: Vec<&Source> = [&source].into_iter().chain(&around.sources).collect();
         let log = Arc::new(folder.log());
         profile.flags.extend(log.problems.iter().cloned());
-        // what was decided is what is set now
-        let bytes = sources.iter().map(|source| source.bytes.as_slice());
-        let logged = Some(log.bytes.as_slice()).filter(|bytes| !bytes.is_empty());
-        let fingerprint = folder.fingerprint_of(bytes.chain(logged));
+        let fingerprint = fingerprint(&folder, &sources, &log);
         let conditions = folder.conditions();
         profile.flags.extend(apart::tailwater(&folder.site, &conditions, &profile));
         Self { folder, profile, on, on_from, age_days, fingerprint, system, conditions, said, log, source }
     }
+}
+
+/// Fingerprint of inputs with the log, since what was decided is what is set now.
+fn fingerprint(folder: &Folder, sources: &[&Source], log: &ReadLog) -> String {
+    let logged = Some(log.bytes.as_slice()).filter(|bytes| !bytes.is_empty());
+    folder.fingerprint_of(sources.iter().map(|source| source.bytes.as_slice()).chain(logged))
 }
 
 /// Whether a problem says that a file beside the casts is passed over.

@@ -62,6 +62,11 @@ impl Given {
         given.by_name(site)
     }
 
+    /// Whether it says anything of an outlet by itself.
+    pub fn names(&self, outlet: usize) -> bool {
+        self.flows.iter().any(|g| g.outlet == outlet) || self.open.iter().any(|g| g.0 == outlet)
+    }
+
     /// What a decision in the log set; gates that the site no longer has are named.
     pub fn logged(site: &Site, gates: &Gates) -> (Self, Vec<String>) {
         let mut given = Self::default();

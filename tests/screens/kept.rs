@@ -160,3 +160,30 @@ fn scenario_a_well_set_by_flows_comes_back_from_nothing() {
     let answer = driver.session().tried_now().unwrap();
     assert!((answer.mix.release.flow_m3s - 40.0).abs() < 1e-6, "{}", driver.text());
 }
+
+/// What the log says is set now is tried first, and comes anew when another program logs.
+#[test]
+fn scenario_the_last_decision_of_the_log_is_what_is_tried_first() {
+    let named = site("decided", SITE, &[("a.csv", CAST)]);
+    let log = ground().join("decided/log.jsonl");
+    let decide = |flow: &str| {
+        let folder = ground().join("decided");
+        let decide = ["--decide", "--by", "crew", "--why", "a test"];
+        let words = [&decide[..], &["--set", flow, "--on", "2026-07-14T10:00"]].concat();
+        let program = env!("CARGO_BIN_EXE_gatemix");
+        let out = std::process::Command::new(program).arg("log").arg(&folder).args(words).output().unwrap();
+        assert!(out.status.success(), "{}", String::from_utf8_lossy(&out.stderr));
+    };
+    // another run may have left it
+    _ = fs::remove_file(&log);
+    decide("Upper=33");
+    let mut driver = Driver::open(Some(&named), SIZE);
+    driver.keys("2");
+    let text = driver.text();
+    assert!(text.contains("33.0") && !text.contains("20.0 m3/s"), "{text}");
+    let before = gatemix::files::folder::stamps(&ground().join("decided").display().to_string());
+    decide("Upper=34");
+    let after = gatemix::files::folder::stamps(&ground().join("decided").display().to_string());
+    assert_ne!(before, after, "a decision of another program is seen");
+    fs::remove_file(&log).unwrap();
+}

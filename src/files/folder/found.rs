@@ -4,6 +4,7 @@ use std::fs::{self, DirEntry};
 use std::path::{Path, PathBuf};
 use std::time::SystemTime;
 
+use crate::files::log::LOG_FILE;
 use crate::files::text::YAML_CAP;
 
 use super::around::{TAILWATER, stays_within};
@@ -49,7 +50,7 @@ pub fn stamps(named: &str) -> Stamps {
     }
     let (root, file) = places(path);
     let named = named_in(&file).into_iter().map(|name| root.join(name));
-    [file]
+    [file, root.join(LOG_FILE)]
         .into_iter()
         .chain(csv_paths(&root, PROFILES))
         .chain(csv_paths(&root, PLANS))

@@ -11,7 +11,7 @@ use crate::rank::Criterion;
 use crate::season::{Choosing, Plan, Schedule, Skies};
 use crate::site::{self, Strategy};
 use crate::tasks::rank::order;
-use crate::tasks::{Context, Failure};
+use crate::tasks::{Context, Failure, fingerprint};
 use crate::units::System;
 
 /// What a season is asked, as typed.
@@ -105,7 +105,7 @@ pub(super) fn understood(context: &Context, asked: &SeasonAsked) -> Result<Under
     let all: Vec<&Source> =
         std::iter::once(&context.source).chain(&context.folder.around().sources).chain(&sources).collect();
     Ok(Understood {
-        fingerprint: context.folder.fingerprint(&all),
+        fingerprint: fingerprint(&context.folder, &all, &context.log),
         plan,
         other_plans: others,
         refused,

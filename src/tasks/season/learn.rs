@@ -12,7 +12,7 @@ use crate::profile::Profile;
 use crate::rank::{Criterion, Progress};
 use crate::season::{Choosing, Learned, Plan, Setup, Skies, learn as fit, passed, past};
 use crate::site::{Case, Strategy};
-use crate::tasks::{Context, Failure};
+use crate::tasks::{Context, Failure, fingerprint};
 
 use super::asked::usage;
 use between::{Between, between};
@@ -116,7 +116,7 @@ pub fn learn(context: &Context, asked: &LearnAsked, progress: Progress) -> Resul
     let told = listed.source.iter().chain(gates.schedule.iter().map(|s| &s.1));
     let sources: Vec<&Source> = others.chain(&context.folder.around().sources).chain(told).collect();
     Ok(LearnAnswer {
-        fingerprint: context.folder.fingerprint(&sources),
+        fingerprint: fingerprint(&context.folder, &sources, &context.log),
         casts: [first, second, third],
         plan,
         schedule: gates.schedule.map(|s| s.0),

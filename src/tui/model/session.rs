@@ -191,10 +191,10 @@ pub struct Session {
 impl Session {
     /// A site just opened: the setting now is tried first.
     pub fn begin(base: Arc<Context>) -> Self {
-        let now = Given::now(base.site());
+        let now = base.now_given().0;
         // what is open now is what is turned first
         let rows = rows(base.site(), base.on.date_naive());
-        let opens = |row: &&Row| matches!(row, Row::Outlet(i) if base.site().now.iter().any(|n| n.0 == *i));
+        let opens = |row: &&Row| matches!(row, Row::Outlet(i) if now.names(*i));
         let row = rows.iter().find(opens).or(rows.first());
         let cell = row.and_then(|row| row.cells(base.site()).last().copied()).unwrap_or(Cell::Pool);
         Self {

@@ -63,7 +63,7 @@ pub(super) fn act(model: &mut Model, action: Action) -> Vec<Effect> {
         }),
         Action::Reset => change(model, |session, draft| {
             if let Some(tried) = draft.tried_mut() {
-                *tried = Given::now(session.base.site());
+                *tried = session.base.now_given().0;
             }
         }),
         Action::PageUp => scrolled(model, false),

@@ -4,7 +4,7 @@ use std::sync::Arc;
 
 use crate::problem::harmless;
 use crate::tasks::rank::{RankAnswer, Shown as Mix};
-use crate::tasks::{Context, Failure, Given};
+use crate::tasks::{Context, Failure};
 use crate::units::{Dimension, System, figure};
 
 use super::super::keys::Action;
@@ -197,7 +197,7 @@ fn take(model: &mut Model) -> Vec<Effect> {
     let number = session.rank.at + 1;
     let of = part_words(&ranked.context, mix);
     let draft = session.draft();
-    let in_place = draft.tried().is_none_or(|t| *t == Given::now(session.base.site()));
+    let in_place = draft.tried().is_none_or(|t| *t == session.base.now_given().0);
     if !in_place && draft.tries.len() >= TRIES && !draft.tries.contains(&given) {
         complain(model, format!("{TRIES} tries are kept; drop one with d on the mix screen"));
         return Vec::new();
