@@ -169,6 +169,8 @@ fn scenario_lines_that_cannot_be_used_are_told_with_their_line_and_left() {
         .map(|p| (p["kind"].as_str().unwrap(), p["line"].as_u64().unwrap()))
         .collect();
     assert_eq!(told, [("log-newer", 2), ("log-line", 3), ("log-torn", 4)]);
+    let words = run(&["log", folder.named()]).out;
+    assert!(words.contains("log-line (line 3)") && words.contains("log-torn (line 4)"), "{words}");
     // the next line is written after them, and they are kept
     assert_eq!(decide(&folder, &["--set", "N1=21"]).code, Some(0));
     assert!(fs::read_to_string(&path).unwrap().starts_with(&text));

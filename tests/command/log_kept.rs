@@ -236,6 +236,9 @@ fn scenario_a_log_that_is_a_device_a_folder_or_below_a_file_is_told_and_nothing_
 
     let folder = Folder::usual();
     fs::create_dir(log_of(&folder)).unwrap();
+    // what only reads goes on without it, and says so
+    let words = run(&["log", folder.named()]).out;
+    assert!(words.contains("the log is passed over: this is a folder"), "{words}");
     logs(folder.named()).failed_with(1);
 
     let below = folder.site_file().join("log.jsonl");

@@ -3,6 +3,7 @@
 use std::path::PathBuf;
 
 use crate::files::log::{LOG_FILE, ReadLog, read};
+use crate::problem::{Problem, Weight};
 
 use super::{Folder, Root};
 
@@ -18,7 +19,12 @@ impl Folder {
     /// The log of the site as it is now; empty where there is none. What keeps it from being read is said in it.
     pub fn log(&self) -> ReadLog {
         self.log_path().map_or_else(ReadLog::default, |path| {
-            read(&path).unwrap_or_else(|problem| ReadLog { problems: vec![problem], ..ReadLog::default() })
+            read(&path).unwrap_or_else(|problem| {
+                // answers go on without it, and say so
+                let words = format!("the log is passed over: {}", problem.words);
+                let passed = Problem { weight: Weight::Flag, words, ..problem };
+                ReadLog { problems: vec![passed], ..ReadLog::default() }
+            })
         })
     }
 }

@@ -32,7 +32,7 @@ pub fn log(context: &Context) -> String {
         out.push_str(&labelled("Event", &event_words(site, event)));
     }
     out.push('\n');
-    out.push_str(&list("The log", &flags_of(&context.log.problems), false, system));
+    out.push_str(&list("The log", &flags_of(&context.log.problems), true, system));
     out.push_str(&wrapped(caution(), 0));
     out
 }
@@ -57,7 +57,7 @@ pub fn logged(context: &Context, logged: &Logged) -> String {
             out.push_str(&labelled("Event", &event_words(site, event)));
         }
     }
-    out.push_str(&list("To know", &flags_of(&logged.said), false, system));
+    out.push_str(&list("To know", &flags_of(&logged.said), true, system));
     out.push_str(&wrapped(caution(), 0));
     out
 }
