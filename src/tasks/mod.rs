@@ -27,6 +27,7 @@ mod changed;
 mod day;
 pub mod log;
 mod mix;
+pub mod note;
 mod pool;
 pub mod rank;
 pub mod river;

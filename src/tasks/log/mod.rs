@@ -3,6 +3,7 @@
 mod asked;
 mod decided;
 mod now;
+mod past;
 
 use std::path::PathBuf;
 
@@ -17,6 +18,7 @@ use crate::record::line::{Decision, Event, Line};
 use super::{Context, Failure};
 
 pub use asked::{DecisionAsked, EventAsked};
+pub use past::{Cause, Hindcast, Past, PastDay, Scored, Spell, Turned};
 
 /// What was written.
 #[derive(Debug, Clone, PartialEq)]
