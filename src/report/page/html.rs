@@ -3,14 +3,15 @@
 
 use std::fmt::{self, Display, Write as _};
 
+use super::picture::{ALONE, BELOW, PAIRED, Size, drawn};
 use super::table::Squared;
-use super::{Block, Page, clean};
+use super::{Block, Page, Picture, clean};
 
 /// How it looks, on a screen and on paper.
 const STYLE: &str = include_str!("page.css");
 
 /// Text of the piece in HTML: cleaned, and every mark with a meaning by its name.
-struct Escaped<'a>(&'a str);
+pub(super) struct Escaped<'a>(pub(super) &'a str);
 
 impl Display for Escaped<'_> {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
@@ -37,8 +38,12 @@ pub(super) fn written(page: &Page) -> String {
          <meta name=\"viewport\" content=\"width=device-width, initial-scale=1\">\n\
          <title>{title}</title>\n<style>\n{STYLE}</style>\n</head>\n<body>\n<main>\n<section>\n<h1>{title}</h1>\n"
     );
-    for block in &page.blocks {
-        out.push_str(&one(block));
+    let pictured = |block: &Block| matches!(block, Block::Picture(_));
+    for run in page.blocks.chunk_by(|a, b| pictured(a) && pictured(b)) {
+        match run {
+            [first, _, ..] if pictured(first) => out.push_str(&beside(run)),
+            _ => run.iter().for_each(|block| out.push_str(&one(block))),
+        }
     }
     out.push_str("</section>\n</main>\n</body>\n</html>\n");
     out
@@ -71,12 +76,32 @@ fn one(block: &Block) -> String {
             };
             format!("<ul class=\"blanks\">\n{}</ul>\n", labels.iter().map(line).collect::<String>())
         }
-        Block::Picture(picture) => {
-            let (title, words) = (Escaped(&picture.title), Escaped(&picture.words));
-            format!("<figure>\n<figcaption><strong>{title}.</strong> {words}</figcaption>\n</figure>\n")
-        }
+        Block::Picture(picture) => figure(picture, ALONE),
         Block::Sheet => "</section>\n<section class=\"sheet\">\n".to_owned(),
     }
+}
+
+/// Pictures that follow each other: two beside each other, an odd one below over the whole width.
+fn beside(run: &[Block]) -> String {
+    let pictures: Vec<&Picture> =
+        run.iter().filter_map(|b| if let Block::Picture(p) = b { Some(&**p) } else { None }).collect();
+    let odd = pictures.len() % 2 == 1;
+    let sized = |(at, picture): (usize, &&Picture)| {
+        figure(picture, if odd && at + 1 == pictures.len() { BELOW } else { PAIRED })
+    };
+    let figures: String = pictures.iter().enumerate().map(sized).collect();
+    format!("<div class=\"pictures\">\n{figures}</div>\n")
+}
+
+/// A picture with its words, or its words alone where there is nothing to draw.
+fn figure(picture: &Picture, size: Size) -> String {
+    let svg = drawn(picture, size).unwrap_or_default();
+    let class = if size == PAIRED { " class=\"half\"" } else { "" };
+    format!(
+        "<figure{class}>\n{svg}<figcaption><strong>{}.</strong> {}</figcaption>\n</figure>\n",
+        Escaped(&picture.title),
+        Escaped(&picture.words)
+    )
 }
 
 fn rows(table: &Squared) -> String {

@@ -4,6 +4,7 @@
 mod clean;
 mod html;
 mod markdown;
+mod picture;
 mod table;
 mod text;
 
