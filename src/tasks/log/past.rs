@@ -4,6 +4,7 @@
 //! Methods: `docs/methods.md`, section 9.
 
 mod days;
+mod hindcast;
 mod stood;
 mod turned;
 
@@ -22,6 +23,7 @@ use crate::target::DAM;
 use crate::tasks::{Context, Failure};
 
 use days::{Known, casts, known};
+use hindcast::hindcast;
 use stood::Tellers;
 use turned::turned;
 
@@ -103,6 +105,8 @@ pub struct Scored {
     pub degree_days_c: f64,
     /// Days that could be judged.
     pub judged: usize,
+    /// Days at the end that it does not reach, because no mix was allowed any more.
+    pub lost: usize,
 }
 
 /// A past season gone through again.
@@ -163,10 +167,13 @@ pub fn past(context: &Context, progress: Progress) -> Result<Past, Failure> {
         .collect();
     let nothing = Daily::default();
     let gauge = gauges.get(DAM).unwrap_or(&nothing);
-    let days = known(context, &tellers, &casts(context), gauge);
+    let casts = casts(context);
+    let days = known(context, &tellers, &casts, gauge);
     let told: Vec<_> = days.iter().map(Known::day).collect();
     let paired = pairs(site, &told, gauge, &|done| progress(DAYS * done)).ok_or(Failure::Stopped)?;
     let learning = learn(site, &paired.pairs, WINDOW_DAYS);
+    let later = |done: f64| progress(DAYS + (1.0 - DAYS) * done);
+    let hindcast = hindcast(context, &tellers, &casts, gauge, &later)?;
     let warmth: Vec<_> = paired.pairs.iter().map(Pair::temperature_row).collect();
     let breath: Vec<_> = paired.pairs.iter().map(Pair::oxygen_row).collect();
     Ok(Past {
@@ -178,7 +185,7 @@ pub fn past(context: &Context, progress: Progress) -> Result<Past, Failure> {
         left_out: paired.left_out,
         learning,
         spells: Vec::new(),
-        hindcast: Err("the season was not gone through again".into()),
+        hindcast,
         notes: tellers.notes,
     })
 }
