@@ -5,6 +5,7 @@
 
 mod days;
 mod hindcast;
+mod spells;
 mod stood;
 mod turned;
 
@@ -14,6 +15,7 @@ use chrono::NaiveDate;
 
 use crate::problem::Problem;
 use crate::rank::Progress;
+pub use crate::record::Cause;
 use crate::record::{
     Learned, Learning, Left, Pair, Paired, Row, Score, Scores, WINDOW_DAYS, learn, pairs, scores,
 };
@@ -24,6 +26,7 @@ use crate::tasks::{Context, Failure};
 
 use days::{Known, casts, known};
 use hindcast::hindcast;
+use spells::{From, spells};
 use stood::Tellers;
 use turned::turned;
 
@@ -66,19 +69,6 @@ pub struct Turned {
     pub days: (NaiveDate, NaiveDate),
     /// By place, the dam first: temperature, and oxygen.
     pub places: Vec<(String, Score, Score)>,
-}
-
-/// Something that may be why the gauge left the band.
-#[derive(Debug, Clone, PartialEq)]
-pub struct Cause {
-    /// What it is, in plain words that blame nobody.
-    pub name: &'static str,
-    /// What speaks for it.
-    pub speaks_for: Vec<String>,
-    /// What speaks against it.
-    pub against: Vec<String>,
-    /// What would tell, where neither does.
-    pub to_tell: &'static str,
 }
 
 /// Days in a row on which the gauge lay outside the band.
@@ -176,15 +166,24 @@ pub fn past(context: &Context, progress: Progress) -> Result<Past, Failure> {
     let hindcast = hindcast(context, &tellers, &casts, gauge, &later)?;
     let warmth: Vec<_> = paired.pairs.iter().map(Pair::temperature_row).collect();
     let breath: Vec<_> = paired.pairs.iter().map(Pair::oxygen_row).collect();
+    let shown = shown(site, &days, &paired, gauge);
+    let spells = spells(&From {
+        context,
+        days: &shown,
+        known: &days,
+        pairs: &paired.pairs,
+        casts: &casts,
+        suspect: learning.suspect.as_ref(),
+    });
     Ok(Past {
-        days: shown(site, &days, &paired, gauge),
+        days: shown,
         decisions: turned(&tellers, &days, &gauges),
         temperature: scores(&warmth),
         oxygen: scores(&breath),
         with_learned: with(&paired.pairs, &learning.learned),
         left_out: paired.left_out,
         learning,
-        spells: Vec::new(),
+        spells,
         hindcast,
         notes: tellers.notes,
     })
