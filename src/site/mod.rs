@@ -26,9 +26,9 @@ pub use aeration::Aeration;
 pub use limits::{
     Avoid, Avoided, Bins, Block, Crew, GenerationLost, Layer, Limits, Outage, Reserved, ShareRule, Undrawn,
 };
+pub use order_texts::{HoldPoint, OrderTexts, RawOrder};
 pub use outlet::{Kind, Leakage, OpenPart, Opens, Outlet, Position, SAME_OPENING, Shape};
 pub use pool::{Pool, RawRow, WidthSource};
-pub use order_texts::{HoldPoint, OrderTexts, RawOrder};
 pub use raw::{
     Raw, RawAeration, RawAvoid, RawLimits, RawNow, RawOutage, RawOutlet, RawPool, RawReserved, RawShare,
     RawTarget, RawUndrawn, RawWell,
