@@ -25,6 +25,10 @@ pub enum Place {
     River,
     /// The season screen.
     Season,
+    /// The log screen.
+    Log,
+    /// The note screen.
+    Note,
     /// The list of sites.
     Sites,
     /// The list of problems of a broken site.
@@ -35,11 +39,13 @@ pub enum Place {
     List,
     /// While typing.
     Field,
+    /// While typing what is to be logged.
+    Form,
 }
 
 impl Place {
     /// Every place with its heading in the help.
-    pub const HEADINGS: [(Self, &'static str); 12] = [
+    pub const HEADINGS: [(Self, &'static str); 15] = [
         (Self::Everywhere, "everywhere"),
         (Self::Site, "every screen"),
         (Self::Pool, "pool"),
@@ -47,11 +53,14 @@ impl Place {
         (Self::Rank, "rank"),
         (Self::River, "river"),
         (Self::Season, "season"),
+        (Self::Log, "log"),
+        (Self::Note, "note"),
         (Self::Sites, "list of sites"),
         (Self::Problems, "problems of the files"),
         (Self::Help, "this help"),
         (Self::List, "lists and settings"),
         (Self::Field, "while typing"),
+        (Self::Form, "what is to be logged"),
     ];
 }
 

@@ -3,6 +3,7 @@
 pub mod draw;
 mod errands;
 mod keys;
+mod later;
 mod likes;
 mod look;
 pub mod model;
@@ -12,6 +13,7 @@ mod update;
 mod view;
 mod work;
 
+pub use errands::{log, save};
 pub use keys::{Action, Binding, Place, TABLE};
 pub use look::{Look, Role, Symbols, Theme};
 pub use run::{run, sites, start};

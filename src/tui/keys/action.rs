@@ -111,4 +111,36 @@ pub enum Action {
     Oxygen,
     /// What the mixes cost by the end of the season.
     Prices,
+    /// Log the candidate as a decision.
+    Decide,
+    /// Log something that nobody planned.
+    Happened,
+    /// Other words for the decision chosen.
+    Amend,
+    /// Take the decision chosen back.
+    Withdraw,
+    /// How far off: the scores.
+    Scores,
+    /// Spells outside the band.
+    Spells,
+    /// What can be learned.
+    Learned,
+    /// The season gone through again.
+    Hindcast,
+    /// More or less of the past.
+    Span,
+    /// What the note is of.
+    NoteOf,
+    /// The other sheet of the note.
+    Sheet,
+    /// Type why.
+    Why,
+    /// Type remarks.
+    Remarks,
+    /// Type when the change begins.
+    Begins,
+    /// The next format.
+    Format,
+    /// Save the note.
+    Save,
 }
