@@ -12,6 +12,8 @@ use chrono::{DateTime, NaiveDate, Utc};
 
 use crate::files::folder::{Stamps, stamps};
 use crate::problem::Problem;
+use crate::tasks::log::past;
+use crate::tasks::note::note;
 use crate::tasks::rank::{RankAnswer, RankAsked, Shown, rank};
 use crate::tasks::river::downstream;
 use crate::tasks::season::{SeasonAsked, needed, prices, season};
@@ -21,7 +23,6 @@ use crate::tasks::{
 };
 use crate::units::System;
 
-use super::later::{note, past};
 use super::model::{
     Ahead, AsTyped, Downstream, Left, NoteQuestion, Noted, Passed, Priced, SeasonQuestion, asked,
 };

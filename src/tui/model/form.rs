@@ -58,7 +58,8 @@ pub enum EntryOf {
 }
 
 impl Form {
-    /// A form with some lines, each with what stands in it already; typing begins in the first that is empty.
+    /// A form with some lines, each with what stands in it already; typing begins with the name, or after it where that is
+    /// known.
     pub fn new(logs: Logs, what: Vec<String>, context: Arc<Context>, lines: &[(Line, &str)]) -> Self {
         let fields: Vec<Field> = lines
             .iter()
@@ -69,7 +70,8 @@ impl Form {
                 field
             })
             .collect();
-        let at = lines.iter().position(|(_, text)| text.is_empty()).unwrap_or(0);
+        let named = lines.first().is_some_and(|(line, text)| *line == Line::By && !text.is_empty());
+        let at = usize::from(named && lines.len() > 1);
         Self { logs, what, context, fields, at, wrong: None }
     }
 

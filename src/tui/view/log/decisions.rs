@@ -40,8 +40,7 @@ pub(super) fn draw(screen: &Screen, area: Rect, buf: &mut Buffer) {
         return;
     }
     let at = screen.session.decision_at().unwrap_or(0);
-    let head = " no.  from        how it turned out, by whom";
-    put(buf, area, 0, 0, &cut(head, usize::from(area.width)), look.style(Role::Quiet));
+    put(buf, area, 0, 0, &cut(HEAD, usize::from(area.width)), look.style(Role::Quiet));
     let rows = Rect { y: area.y + 1, height: area.height.saturating_sub(1), ..area };
     let from = first_line(at, all.len(), rows.height);
     for (row, (i, decided)) in (0..rows.height).zip(all.iter().enumerate().skip(from)) {
@@ -65,21 +64,23 @@ fn none(screen: &Screen, width: usize) -> Vec<String> {
     wrapped(words, width, 2)
 }
 
-/// ` 8  2026-06-23  bias +0.4 F, 5/7 inside  weekly gate meeting`.
+/// Heads of the columns.
+const HEAD: &str = " no.  from        bias       inside  by";
+
+/// `  8  2026-06-23  +0.4 F     5/7     weekly gate meeting`.
 fn line(screen: &Screen, decided: &Decided) -> String {
     let from = screen.session.stands_from(decided).format("%Y-%m-%d");
-    let turned = match outcome(screen, decided.id) {
-        Some(score) => match score.misfit {
-            Some(misfit) => {
-                format!("bias {}, {}/{} inside", screen.by(misfit.bias), score.inside, score.with_band)
-            }
-            None => "no gauge".to_owned(),
-        },
-        None if decided.stands(screen.session.context().on) => "set now".to_owned(),
-        None => "not known".to_owned(),
+    let (bias, inside) = match outcome(screen, decided.id).map(|score| (score, score.misfit)) {
+        Some((score, Some(misfit))) => {
+            (screen.by(misfit.bias), format!("{}/{}", score.inside, score.with_band))
+        }
+        Some((_, None)) => ("no gauge".to_owned(), "-".to_owned()),
+        None if decided.stands(screen.session.context().on) => ("set now".to_owned(), "-".to_owned()),
+        None => ("not known".to_owned(), "-".to_owned()),
     };
     let amended = if decided.amended > 0 { " (amended)" } else { "" };
-    format!("{:>3}  {from}  {turned:<23}  {}{amended}", decided.id, harmless(&decided.decision.by))
+    let by = harmless(&decided.decision.by);
+    format!("{:>3}  {from}  {bias:<9}  {inside:<6}  {by}{amended}", decided.id)
 }
 
 /// How a decision turned out at the dam, by what is looked at.

@@ -99,7 +99,7 @@ pub(super) fn picture(screen: &Screen) -> Option<PastPicture> {
             lines,
         },
         decided: decided(screen, days),
-        marks: days.iter().zip(&told).map(|(day, told)| mark(screen, day, told)).collect(),
+        marks: days.iter().map(|day| mark(screen, day)).collect(),
     })
 }
 
@@ -117,8 +117,9 @@ fn decided(screen: &Screen, days: &[PastDay]) -> Vec<(usize, u64, bool)> {
     out
 }
 
-fn mark(screen: &Screen, day: &PastDay, told: &Told) -> DayMark {
-    match (&day.left_out, told.outside()) {
+/// How a day stands.
+pub(super) fn mark(screen: &Screen, day: &PastDay) -> DayMark {
+    match (&day.left_out, screen.told(day).outside()) {
         (Some(_), _) if screen.is_event(day) => DayMark::Event,
         (Some(_), _) => DayMark::LeftOut,
         (None, Some(true)) => DayMark::Outside,

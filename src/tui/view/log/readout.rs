@@ -10,7 +10,7 @@ use crate::units::{figure, show};
 use super::super::scroll::{Lines, say};
 use super::Screen;
 use super::decisions::gates;
-use super::picture::{EXPECTED, GAUGE, Told};
+use super::picture::{EXPECTED, GAUGE, Told, mark};
 
 /// Everything that is said of the day read.
 pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
@@ -27,7 +27,8 @@ pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
         say(&mut out, &words, width, 2, Role::Warn);
     }
     stood(screen, day, width, &mut out);
-    for (of, sign, meaning) in DayMark::SIGNS {
+    let marks: Vec<DayMark> = session.past_days().iter().map(|day| mark(screen, day)).collect();
+    for (of, sign, meaning) in DayMark::SIGNS.into_iter().filter(|(of, ..)| marks.contains(of)) {
         say(&mut out, &format!("{sign} {meaning}"), width, 2, of.role());
     }
     out
@@ -60,8 +61,8 @@ fn figures(screen: &Screen, told: &Told, width: usize, out: &mut Lines) {
         say(out, &format!("difference {}{standing}", screen.by(measured - expected)), width, 2, role);
     }
     if let Some(plain) = told.plain {
-        let by = told.measured.map_or_else(String::new, |m| format!(", difference {}", screen.by(m - plain)));
-        say(out, &format!("nothing learned: {}{by}", value(plain)), width, 2, Role::Plain);
+        let by = told.measured.map_or_else(String::new, |m| format!(", {}", screen.by(m - plain)));
+        say(out, &format!("nothing learned {}{by}", value(plain)), width, 2, Role::Plain);
     }
 }
 
