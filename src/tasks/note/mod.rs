@@ -2,6 +2,7 @@
 
 mod begins;
 mod ready;
+mod stage;
 mod subject;
 mod unchecked;
 
@@ -17,6 +18,7 @@ use super::river::{RiverAnswer, downstream};
 use super::season::{SeasonAnswer, SeasonAsked, season};
 use super::{Context, Failure, MixAnswer, Word, now_setting};
 
+pub use stage::StageChange;
 pub use unchecked::Unchecked;
 
 use begins::begins;
@@ -68,6 +70,8 @@ pub struct NoteAnswer {
     pub ranked: RankAnswer,
     /// What arrives down the river.
     pub river: RiverAnswer,
+    /// What the change does to the stage at each point of the river.
+    pub stages: Vec<StageChange>,
     /// The season in its cases, or why there is none.
     pub season: Result<SeasonAnswer, String>,
     /// When the change begins.
@@ -124,6 +128,8 @@ pub fn note(context: &Context, asked: &NoteAsked, progress: Progress) -> Result<
     }
     let lists = [Some(&mix.mix.not_checked), now.as_ref().map(|now| &now.mix.not_checked)];
     let not_checked = unchecked::unchecked(lists.into_iter().flatten().map(Vec::as_slice));
+    let found = way.as_ref().and_then(|way| way.as_ref().ok());
+    let stages = stage::stages(context, &river, found);
     let ready = Ready {
         context,
         mix: &mix,
@@ -131,6 +137,7 @@ pub fn note(context: &Context, asked: &NoteAsked, progress: Progress) -> Result<
         stands,
         order: way.as_ref(),
         not_checked: &not_checked,
+        stages: &stages,
         begins,
     };
     let (not_ready, cautions) = (ready.not_ready(cannot), ready.cautions(said));
@@ -146,6 +153,7 @@ pub fn note(context: &Context, asked: &NoteAsked, progress: Progress) -> Result<
         mix,
         ranked,
         river,
+        stages,
         season,
         begins,
         stands,

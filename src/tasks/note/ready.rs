@@ -7,8 +7,9 @@ use crate::order::{NoOrder, Order};
 use crate::problem::{Problem, Weight};
 use crate::site::Site;
 use crate::tasks::{Context, Freshness, MixAnswer, Understood};
+use crate::units::say;
 
-use super::Unchecked;
+use super::{StageChange, Unchecked};
 
 /// What is looked at.
 pub(super) struct Ready<'a> {
@@ -19,6 +20,7 @@ pub(super) struct Ready<'a> {
     pub(super) stands: bool,
     pub(super) order: Option<&'a Result<Order, NoOrder>>,
     pub(super) not_checked: &'a [Unchecked],
+    pub(super) stages: &'a [StageChange],
     pub(super) begins: DateTime<FixedOffset>,
 }
 
@@ -52,6 +54,7 @@ impl Ready<'_> {
             let words = "limits of structure and water control are not checked";
             out.push(format!("{words}: {}", weighty.join("; ")));
         }
+        out.extend(self.falls());
         out.extend(unsure(site));
         out.extend(self.stale());
         if let Some(change) = &self.mix.change
@@ -102,6 +105,17 @@ impl Ready<'_> {
         out.extend(self.context.profile.flags.iter().filter(kept).map(|p| p.words.clone()));
         out.dedup();
         out
+    }
+
+    /// Points whose stage would fall faster than it may.
+    fn falls(&self) -> Option<String> {
+        let points = self.context.site().river.as_ref().map_or(&[][..], |river| &river.points);
+        let of = |stage: &StageChange| {
+            let (point, fall, most) = (points.get(stage.point)?, stage.fall_m?, stage.most_fall_m?);
+            Some(format!("{} by {} in an hour, {} allowed", point.name, say::m(fall, 3), say::m(most, 3)))
+        };
+        let all: Vec<String> = self.stages.iter().filter(|s| s.falls_too_fast()).filter_map(of).collect();
+        (!all.is_empty()).then(|| format!("the stage may fall faster than allowed: {}", all.join("; ")))
     }
 
     fn as_warned(&self, kind: &'static str) -> impl Iterator<Item = String> {
