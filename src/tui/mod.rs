@@ -3,7 +3,6 @@
 pub mod draw;
 mod errands;
 mod keys;
-mod later;
 mod likes;
 mod look;
 pub mod model;

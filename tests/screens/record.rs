@@ -128,12 +128,14 @@ pub(crate) fn invented() -> Past {
         days_outside,
         degree_days_c: 0.8 * days_outside as f64,
         judged: 66,
+        lost: 0,
     };
     Past {
         days: (0..DAYS).map(day).collect(),
         decisions: [(1, 3, 16), (2, 17, 37), (4, 38, 69)].map(turned).to_vec(),
         temperature: scores(0.26),
         oxygen: scores(0.1),
+        with_applied: None,
         with_learned: Some((score(63, 0.0, 60), score(63, 0.0, 63))),
         left_out: [26, 27]
             .map(|i| Left { date: date(i), why: Why::Event("meter at fault".to_owned()) })
@@ -277,15 +279,19 @@ fn scenario_each_page_is_opened_and_left_by_its_key() {
     let mut driver = opened("record-pages");
     driver.resize(WIDE);
     for (key, page, pieces) in [
-        ("Enter", LogPage::Decision, &["Decision 4", "keep the cold water", "or when the river rises"][..]),
-        ("s", LogPage::Scores, &["most from Sluice", "30 to 42 m3/s", "June", "2 days: unplanned event"]),
-        ("c", LogPage::Spells, &["4 days outside", "for: Lower shut", "it would tell: shut the gate"]),
+        (
+            "Enter",
+            LogPage::Decision,
+            &["Decision  4, set now", "keep the cold water", "or when the river rises"][..],
+        ),
+        ("s", LogPage::Scores, &["All days", "30.0 to 42.0 m3/s", "June", "2 days: unplanned event"]),
+        ("c", LogPage::Spells, &["outside on 4 days", "for: Lower shut", "would tell: look at the gate"]),
         (
             "l",
             LogPage::Learned,
-            &["constant bias: KEPT", "+0.26 C", "0.38 C -> 0.24 C", "zone factor: refused"],
+            &["constant bias: +0.26 C", "0.38 C without, 0.24 C with it; kept", "refused: its 80 %"],
         ),
-        ("h", LogPage::Hindcast, &["perfect hindsight", "doing nothing", "31 d"]),
+        ("h", LogPage::Hindcast, &["perfect hindsight", "doing nothing: outside on 31"]),
     ] {
         driver.keys(key);
         assert_eq!(driver.session().log.page, page);

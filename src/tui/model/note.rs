@@ -3,13 +3,13 @@
 use std::path::{Path, PathBuf};
 use std::sync::Arc;
 
-use crate::report::page::{Block, Format, Page};
+use crate::report::note::page;
+use crate::report::page::{Block, Format, Page, written};
 use crate::tasks::note::{NoteAnswer, NoteAsked};
 use crate::tasks::rank::RankAsked;
 use crate::tasks::{Changed, Context, Given};
 use crate::units::System;
 
-use super::super::later::{page, written};
 use super::session::Session;
 use super::words::AsTyped;
 

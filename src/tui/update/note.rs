@@ -3,10 +3,10 @@
 use std::path::{Path, PathBuf};
 
 use crate::problem::{Problem, harmless};
+use crate::report::page::written;
 use crate::tasks::{Context, Failure};
 
 use super::super::keys::Action;
-use super::super::later::written;
 use super::super::model::{
     FORMATS, Field, Model, NoteLine, Noted, Over, Saved, Screen, Session, Typed, format_of,
 };

@@ -22,12 +22,11 @@ use ratatui::buffer::Buffer;
 use ratatui::layout::{Position, Rect};
 
 use crate::problem::{Problem, Weight, any_refused, harmless};
-use crate::report::page::Format;
+use crate::report::page::{Format, written};
 use crate::report::text;
 use crate::tasks::{Context, Failure};
 use crate::units::System;
 
-use super::later::written;
 use super::model::{Cell, Model, Screen, Stage};
 
 pub(super) use lists::help_lines;
@@ -199,7 +198,9 @@ pub(super) fn answer_text(model: &Model) -> Option<String> {
             let ahead = session.season_shown()?.ahead;
             Some(text::season(&in_units(&ahead.context), &ahead.answer))
         }
-        Screen::Log => session.past.as_ref().map(|passed| text::log(&in_units(&passed.context))),
+        Screen::Log => {
+            session.past.as_ref().map(|passed| text::log::log(&in_units(&passed.context), &passed.past))
+        }
         Screen::Note => session.noted.as_ref().map(|noted| written(&noted.page, Format::Text)),
     }
 }

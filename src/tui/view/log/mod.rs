@@ -15,12 +15,14 @@ mod pages;
 mod picture;
 mod readout;
 
+use std::borrow::Cow;
+
 use chrono::NaiveDate;
 use ratatui::buffer::Buffer;
 use ratatui::layout::{Position, Rect};
 
 use crate::record::Score;
-use crate::tasks::Failure;
+use crate::tasks::{Context, Failure};
 use crate::tui::draw::past::{day_at, past};
 use crate::tui::look::Role;
 use crate::tui::model::{LogPage, Model, Passed, Session};
@@ -83,6 +85,16 @@ impl<'a> Screen<'a> {
 
     fn system(&self) -> System {
         self.model.system()
+    }
+
+    /// A context in the units shown.
+    fn context<'c>(&self, context: &'c Context) -> Cow<'c, Context> {
+        if context.system == self.system() {
+            return Cow::Borrowed(context);
+        }
+        let mut context = context.clone();
+        context.system = self.system();
+        Cow::Owned(context)
     }
 
     /// A difference with its sign: `+0.4 F`.
@@ -184,10 +196,9 @@ fn scrolling(screen: &Screen, parts: &Parts) -> (Lines, Rect) {
             return (readout::lines(screen, usize::from(parts.readout.width)), parts.readout);
         }
         LogPage::Decision => decisions::full(screen, width),
-        LogPage::Scores => pages::scores(screen, width),
-        LogPage::Spells => pages::spells(screen, width),
-        LogPage::Learned => pages::learned(screen, width),
-        LogPage::Hindcast => pages::hindcast(screen, width),
+        LogPage::Scores | LogPage::Spells | LogPage::Learned | LogPage::Hindcast => {
+            pages::lines(screen, width)
+        }
     };
     (page, parts.page)
 }

@@ -1,6 +1,7 @@
 //! The day read: what was expected and why, what the gauge read, what stood.
 
 use crate::problem::harmless;
+use crate::report::text::log::gates;
 use crate::tasks::log::PastDay;
 use crate::tui::draw::past::DayMark;
 use crate::tui::draw::through::sign;
@@ -9,7 +10,6 @@ use crate::units::{figure, show};
 
 use super::super::scroll::{Lines, say};
 use super::Screen;
-use super::decisions::gates;
 use super::picture::{EXPECTED, GAUGE, Told, mark};
 
 /// Everything that is said of the day read.
@@ -81,7 +81,11 @@ fn stood(screen: &Screen, day: &PastDay, width: usize, out: &mut Lines) {
         return;
     };
     let since = screen.session.stands_from(decided).format("%m-%d");
-    let words = format!("decision {} since {since}: {}", decided.id, gates(screen, &decided.decision.chosen));
+    let words = format!(
+        "decision {} since {since}: {}",
+        decided.id,
+        gates(&decided.decision.chosen, screen.system())
+    );
     say(out, &words, width, 2, Role::Plain);
     say(out, &format!("why: {}", harmless(&decided.decision.why)), width, 2, Role::Quiet);
 }
