@@ -1,6 +1,7 @@
 //! From raw to checked site: every problem at once, each at its path.
 
 mod aeration;
+mod learned;
 mod limits;
 mod months;
 mod operation;
@@ -20,7 +21,7 @@ use crate::problem::{Problem, any_refused};
 use crate::target::Target;
 use crate::units::{Datum, say};
 
-use super::{Outlet, Pool, Raw, Site, Whereabouts};
+use super::{Outlet, Pool, Raw, Site, WINDOW_DAYS, Whereabouts};
 
 /// Altitudes of settled land, m (choice, wide).
 const ALTITUDE_M: std::ops::RangeInclusive<f64> = -450.0..=6000.0;
@@ -72,6 +73,7 @@ impl Site {
         }
         let (now, now_wells) = operation::now(raw, &outlets, &mut problems);
         spread::spread(raw, &mut problems);
+        let learned = learned::learned(raw, &outlets, &mut problems);
         let season = season::season(raw, &mut problems);
         coverage(raw, &mut problems);
         if any_refused(&problems) {
@@ -104,13 +106,15 @@ impl Site {
                 water: raw.water,
                 checks: raw.checks,
                 band: raw.band,
+                applied: None,
+                learning_days: raw.learning_days.unwrap_or(WINDOW_DAYS),
                 columns: raw.columns.clone(),
                 casts: raw.casts.clone(),
                 season,
                 demonstration: raw.demonstration,
             })
         })();
-        (site, problems)
+        (site.map(|site: Self| site.with_learned(learned)), problems)
     }
 }
 

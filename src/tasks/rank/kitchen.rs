@@ -34,7 +34,7 @@ impl Kitchen<'_> {
     pub(super) fn blend(&self, setting: &Setting) -> Option<Blend> {
         let (site, profile) = (self.context.site(), &self.context.profile);
         let levels = levels(site, self.groups, setting, profile.pool_m, 0.5, CrestForm::Overflow);
-        let drawn = draw_levels(&profile.column, &levels, 1.0);
+        let drawn = draw_levels(&profile.column, &levels, site.zone_factor());
         Some(release(&drawn)?.aerated(site, &drawn, 0.5))
     }
 
