@@ -136,7 +136,7 @@ pub fn judge(
     let mut warnings: Vec<Problem> = broken(site, &limits).collect();
     warnings.extend(conflicts.iter().map(|conflict| conflict.problem(site)));
     beware::zones(site, column, &drawn, &mut warnings);
-    beware::overlaps(column, &drawn, &release, &mut warnings);
+    beware::overlaps(site, column, &drawn, &release, &mut warnings);
     beware::oxygen(site, &drawn, &release, &spread, &mut warnings);
     beware::gain(site, &drawn, &release, &mut warnings);
     beware::half_dry(site, setting, profile.pool_m, &mut warnings);
