@@ -3,6 +3,7 @@
 mod learned;
 mod log;
 mod needed;
+mod note;
 mod rank;
 mod rank_shape;
 mod river;
@@ -39,6 +40,7 @@ use targets::{conflicts, points, targets};
 pub use learned::learned;
 pub use log::{log, logged};
 pub use needed::needed;
+pub use note::note;
 pub use rank::{rank, rank_priced};
 pub use river::river;
 pub use season::season;
