@@ -4,6 +4,7 @@ mod learned;
 mod log;
 mod needed;
 mod note;
+mod past;
 mod rank;
 mod rank_shape;
 mod river;
