@@ -8,11 +8,10 @@ use crate::report::page::{Block, Table};
 use crate::site::Site;
 use crate::tasks::Context;
 use crate::tasks::Freshness;
-use crate::tasks::note::{NoteAnswer, Subject};
+use crate::tasks::note::{NoteAnswer, Subject, Unchecked};
 use crate::tasks::river::{Way, Which};
 use crate::units::say;
 
-use super::order::unchecked;
 use super::words::{aired, asks, banded, dam, flow, gates, moment, named, percent, stands, subject};
 use super::{pictures, ranked, season};
 
@@ -184,7 +183,7 @@ fn data(context: &Context, answer: &NoteAnswer) -> Vec<String> {
         None => "No weather is told.".to_owned(),
     });
     if !answer.not_checked.is_empty() {
-        let all: Vec<String> = answer.not_checked.iter().map(unchecked).collect();
+        let all: Vec<String> = answer.not_checked.iter().map(Unchecked::words).collect();
         out.push(format!("Limits not checked: {}.", all.join("; ")));
     }
     let cautions = answer.cautions.iter().take(CAUTIONS).map(|words| format!("{words}."));

@@ -12,7 +12,7 @@ use crate::tasks::note::{NoteAnswer, StageChange, Unchecked};
 use crate::tasks::river::Which;
 use crate::units::say;
 
-use super::words::{dam, flow, flow_change, gates, limit, moment, opening, room, subject, warmth};
+use super::words::{dam, flow, flow_change, gates, moment, opening, room, stand, subject, warmth};
 
 /// Labels of the lines to be signed where the site file names none (choice: roles, no names).
 const SIGN: [&str; 4] = ["Prepared by", "Ordered by", "Dam safety", "Carried out by"];
@@ -37,7 +37,7 @@ pub(super) fn sheet(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
     match &answer.order {
         Some(Ok(order)) => {
             out.push(Block::Table(moves(site, order, answer.begins)));
-            out.push(Block::Table(expected(site, order)));
+            out.push(Block::Table(expected(site, answer.before.as_ref(), order)));
             out.push(Block::Words(kept(site)));
             out.extend(down_the_river(context, answer, order));
             out.extend(by_hand(site, order));
@@ -52,18 +52,15 @@ pub(super) fn sheet(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
             out.push(Block::Warning(words.to_owned()));
         }
     }
-    if !answer.not_checked.is_empty() {
-        let all: Vec<String> = answer.not_checked.iter().map(unchecked).collect();
-        out.push(Block::Words(format!("Not checked, since nobody gave a limit: {}.", all.join("; "))));
+    // those that weigh are reasons above, where there is an order to sign
+    let rest = answer.not_checked.iter().filter(|one| answer.stands || !one.weighs());
+    let rest: Vec<String> = rest.map(Unchecked::words).collect();
+    if !rest.is_empty() {
+        let also = if answer.stands { "Not checked" } else { "Not checked either" };
+        out.push(Block::Words(format!("{also}, since nobody gave a limit: {}.", rest.join("; "))));
     }
     out.push(Block::Words(caution().to_owned()));
     out
-}
-
-/// A limit that is not checked, in words.
-pub(super) fn unchecked(one: &Unchecked) -> String {
-    let of = if one.of.is_empty() { String::new() } else { format!(" of {}", one.of.join(", ")) };
-    limit(one.rule) + &of
 }
 
 fn facts(context: &Context, answer: &NoteAnswer) -> Vec<(String, String)> {
@@ -106,7 +103,7 @@ fn difference(site: &Site, before: &Setting, wanted: &Setting) -> Table {
     };
     let stands = |outlet: &Outlet, gate: Option<Gate>| match gate {
         None => "shut".to_owned(),
-        Some(gate) => format!("{}, {}", opening(outlet, gate.opening), flow(gate.flow_m3s)),
+        Some(gate) => stand(outlet, &gate),
     };
     let row = |(index, outlet): (usize, &Outlet)| {
         let (now, then) = (find(before, index), find(wanted, index));
@@ -131,8 +128,8 @@ fn moves(site: &Site, order: &Order, begins: DateTime<FixedOffset>) -> Table {
             number.to_string(),
             clock(site, begins, step.at_min),
             what(site, step),
-            stand(site, step.moved, step.from),
-            stand(site, step.moved, step.to),
+            moved_stand(site, step.moved, step.from),
+            moved_stand(site, step.moved, step.to),
         ]
     };
     Table {
@@ -172,46 +169,49 @@ fn what(site: &Site, step: &Step) -> String {
 }
 
 /// How what is moved stands.
-fn stand(site: &Site, moved: Moved, stand: Stand) -> String {
+fn moved_stand(site: &Site, moved: Moved, at: Stand) -> String {
     let outlet = match moved {
         Moved::Gate(index) | Moved::Outlet(index) => site.outlets.get(index),
         Moved::Well(_) => None,
     };
-    let open = outlet.zip(stand.opening).map(|(outlet, open)| opening(outlet, open));
-    match (moved, open) {
-        (Moved::Gate(_), Some(open)) => open,
-        (Moved::Outlet(_), Some(_)) if stand.flow_m3s <= 0.0 => "shut".to_owned(),
-        (Moved::Outlet(_), Some(open)) => format!("{open}, {}", flow(stand.flow_m3s)),
-        _ => flow(stand.flow_m3s),
+    match (moved, outlet, at.opening) {
+        (Moved::Gate(_), Some(outlet), Some(open)) => opening(outlet, open),
+        (Moved::Outlet(_), ..) if at.flow_m3s <= 0.0 => "shut".to_owned(),
+        (Moved::Outlet(index), Some(outlet), Some(open)) => {
+            stand(outlet, &Gate { outlet: index, opening: open, flow_m3s: at.flow_m3s })
+        }
+        _ => flow(at.flow_m3s),
     }
 }
 
 /// What is expected after each step.
-fn expected(site: &Site, order: &Order) -> Table {
+fn expected(site: &Site, before: Option<&Setting>, order: &Order) -> Table {
     let water = |of: Option<crate::mix::Blend>| match of {
         None => ["nothing flows".to_owned(), "-".to_owned()],
         Some(of) => [flow(of.flow_m3s), warmth(of.temperature_c)],
     };
+    let heads = |heads_m: &[(usize, f64)]| {
+        let one = |(well, head_m): &(usize, f64)| {
+            Some(format!("{} {}", site.wells.get(*well)?.name, say::m(*head_m, 2)))
+        };
+        let all: Vec<String> = heads_m.iter().filter_map(one).collect();
+        if all.is_empty() { "-".to_owned() } else { all.join("; ") }
+    };
     let row = |(step, number): (&Step, usize)| {
-        let heads: Vec<String> = step
-            .heads_m
-            .iter()
-            .filter_map(|(well, head_m)| {
-                Some(format!("{} {}", site.wells.get(*well)?.name, say::m(*head_m, 2)))
-            })
-            .collect();
         let mut nearest: Vec<String> =
             step.nearest.iter().filter_map(|check| room(site, check)).take(1).collect();
-        let passes: Vec<String> = step.passes.iter().map(|check| limit(check.rule)).collect();
+        let passes: Vec<&str> = step.passes.iter().map(|check| check.rule.name()).collect();
         if !passes.is_empty() {
             nearest.push(format!("passes without a halt: {}", passes.join(", ")));
         }
         let [total, temperature] = water(step.after);
-        let or_none = |texts: Vec<String>| if texts.is_empty() { "-".to_owned() } else { texts.join("; ") };
-        vec![number.to_string(), total, temperature, or_none(heads), or_none(nearest)]
+        let nearest = if nearest.is_empty() { "-".to_owned() } else { nearest.join("; ") };
+        vec![number.to_string(), total, temperature, heads(&step.heads_m), nearest]
     };
     let [total, temperature] = water(order.before);
-    let now = vec!["now".to_owned(), total, temperature, "-".to_owned(), "-".to_owned()];
+    let known = (0..site.wells.len()).filter_map(|well| Some((well, before?.head_m(well)?)));
+    let known: Vec<(usize, f64)> = known.collect();
+    let now = vec!["now".to_owned(), total, temperature, heads(&known), "-".to_owned()];
     Table {
         caption:
             "Expected after each step: what leaves the dam, head over the wells, the limit that comes nearest"

@@ -118,10 +118,10 @@ fn rejected(site: &Site, all: &[Rejected]) -> Vec<String> {
     }
     nearest.sort_by_key(|(rule, _)| *rule);
     let more = nearest.len().saturating_sub(LIMITS);
-    let mut out: Vec<String> =
-        nearest.iter().take(LIMITS).map(|(_, one)| one.check.words(site).replacen('_', " ", 3)).collect();
+    let mut out: Vec<String> = nearest.iter().take(LIMITS).map(|(_, one)| one.check.words(site)).collect();
     if more > 0 {
-        out.push(format!("and {more} more kinds of limits"));
+        let kinds = if more == 1 { "kind" } else { "kinds" };
+        out.push(format!("and {more} more {kinds} of limit"));
     }
     out
 }

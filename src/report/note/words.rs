@@ -2,7 +2,7 @@
 
 use chrono::{DateTime, FixedOffset};
 
-use crate::mix::limits::{Check, Rule};
+use crate::mix::limits::Check;
 use crate::mix::{Gate, Setting, TargetStanding};
 use crate::site::{Outlet, Site};
 use crate::target::{DAM, Standing, Statistic, Target};
@@ -76,26 +76,28 @@ pub(super) fn sorted<'a>(site: &'a Site, setting: &'a Setting) -> Vec<(&'a Outle
     out
 }
 
-/// A setting in one line: `N3 open 100%, 600 cfs`.
+/// How an outlet stands with its flow; of one that is set by its flow alone that.
+pub(super) fn stand(outlet: &Outlet, gate: &Gate) -> String {
+    if outlet.well.is_some() || !outlet.positions.is_empty() {
+        format!("{}, {}", opening(outlet, gate.opening), flow(gate.flow_m3s))
+    } else {
+        flow(gate.flow_m3s)
+    }
+}
+
+/// A setting in one line: `N3 open 100%, 600 cfs; Sluice 180 cfs`.
 pub(super) fn gates(site: &Site, setting: &Setting) -> String {
-    let one = |(outlet, gate): &(&Outlet, &Gate)| {
-        let stands = outlet.well.is_some() || !outlet.positions.is_empty();
-        let opening = if stands { format!(" {}", opening(outlet, gate.opening)) } else { String::new() };
-        format!("{}{opening} {}", outlet.name, flow(gate.flow_m3s))
-    };
-    let all: Vec<String> = sorted(site, setting).iter().map(one).collect();
-    if all.is_empty() { "every gate shut".to_owned() } else { all.join(", ") }
+    let all: Vec<String> = sorted(site, setting)
+        .iter()
+        .map(|(outlet, gate)| format!("{} {}", outlet.name, stand(outlet, gate)))
+        .collect();
+    if all.is_empty() { "every gate shut".to_owned() } else { all.join("; ") }
 }
 
-/// A limit by its key, as words.
-pub(super) fn limit(rule: Rule) -> String {
-    rule.name().replace(['_', '.'], " ")
-}
-
-/// The room left of a limit: `min submergence of N3: 12.0 ft left`.
+/// The room left of a limit: `min_submergence of N3: 12.0 ft left`.
 pub(super) fn room(site: &Site, check: &Check) -> Option<String> {
     let of = check.of.name(site).map_or_else(String::new, |name| format!(" of {name}"));
-    Some(format!("{}{of}: {} left", limit(check.rule), check.spare()?))
+    Some(format!("{}{of}: {} left", check.rule.name(), check.spare()?))
 }
 
 /// A target by name, with its place and its statistic where they are not the usual ones.
