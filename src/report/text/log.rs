@@ -56,13 +56,13 @@ pub fn log(context: &Context, past: &Past) -> String {
 fn happened(context: &Context, past: &Past) -> String {
     let (Some(first), Some(last)) = (past.days.first(), past.days.last()) else { return String::new() };
     let held = past.temperature.all.n.max(past.oxygen.all.n);
-    let mut out = format!(
-        "What happened, {} to {}: {} of {} days can be held against the gauge\n",
+    let words = format!(
+        "What happened, {} to {}: {held} of {} days can be held against the gauge",
         first.date,
         last.date,
-        held,
         past.days.len()
     );
+    let mut out = wrapped(&words, 2);
     for line in scores(context, past) {
         out.push_str(&line);
         out.push('\n');
