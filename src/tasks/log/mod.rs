@@ -18,7 +18,7 @@ use crate::record::line::{Decision, Event, Line};
 use super::{Context, Failure};
 
 pub use asked::{DecisionAsked, EventAsked};
-pub use past::{Cause, Hindcast, Past, PastDay, Scored, Spell, Turned};
+pub use past::{Cause, Hindcast, Past, PastDay, Scored, Spell, Turned, past};
 
 /// What was written.
 #[derive(Debug, Clone, PartialEq)]

@@ -1,10 +1,32 @@
 //! What happened: every day of the past held against the gauge, each decision, what a season cost beside doing nothing
 //! and beside perfect hindsight, and what the record teaches.
+//!
+//! Methods: `docs/methods.md`, section 9.
+
+mod days;
+mod stood;
+mod turned;
+
+use std::collections::BTreeMap;
 
 use chrono::NaiveDate;
 
 use crate::problem::Problem;
-use crate::record::{Learning, Left, Score, Scores};
+use crate::rank::Progress;
+use crate::record::{
+    Learned, Learning, Left, Pair, Paired, Row, Score, Scores, WINDOW_DAYS, learn, pairs, scores,
+};
+use crate::series::Daily;
+use crate::site::Site;
+use crate::target::DAM;
+use crate::tasks::{Context, Failure};
+
+use days::{Known, casts, known};
+use stood::Tellers;
+use turned::turned;
+
+/// Share of the work that the days are; the rest is the season gone through again (choice).
+const DAYS: f64 = 0.2;
 
 /// A day of the past.
 #[derive(Debug, Clone, PartialEq)]
@@ -123,4 +145,107 @@ pub struct Past {
     pub hindcast: Result<Hindcast, String>,
     /// What was assumed.
     pub notes: Vec<Problem>,
+}
+
+/// What happened up to the date of the answer. Days are computed with nothing learned, and then with what the site file
+/// applies of it.
+///
+/// # Errors
+/// [`Failure::Stopped`], where `progress` stops it.
+pub fn past(context: &Context, progress: Progress) -> Result<Past, Failure> {
+    let site = context.site();
+    let tellers = Tellers::of(context);
+    let gauges: BTreeMap<String, Daily> = context
+        .conditions
+        .observed
+        .iter()
+        .map(|(point, record)| (point.clone(), record.daily(site.offset, site.coverage)))
+        .collect();
+    let nothing = Daily::default();
+    let gauge = gauges.get(DAM).unwrap_or(&nothing);
+    let days = known(context, &tellers, &casts(context), gauge);
+    let told: Vec<_> = days.iter().map(Known::day).collect();
+    let paired = pairs(site, &told, gauge, &|done| progress(DAYS * done)).ok_or(Failure::Stopped)?;
+    let learning = learn(site, &paired.pairs, WINDOW_DAYS);
+    let warmth: Vec<_> = paired.pairs.iter().map(Pair::temperature_row).collect();
+    let breath: Vec<_> = paired.pairs.iter().map(Pair::oxygen_row).collect();
+    Ok(Past {
+        days: shown(site, &days, &paired, gauge),
+        decisions: turned(&tellers, &days, &gauges),
+        temperature: scores(&warmth),
+        oxygen: scores(&breath),
+        with_learned: with(&paired.pairs, &learning.learned),
+        left_out: paired.left_out,
+        learning,
+        spells: Vec::new(),
+        hindcast: Err("the season was not gone through again".into()),
+        notes: tellers.notes,
+    })
+}
+
+/// What the site file applies of what was learned.
+fn applied(_site: &Site) -> Option<&Learned> {
+    None
+}
+
+/// The scores of pairs with what was learned put to them; `None` where nothing was.
+fn with(pairs: &[Pair], learned: &Learned) -> Option<(Score, Score)> {
+    let taught = learned.bias_c.is_some()
+        || !learned.by_level_c.is_empty()
+        || learned.zone_factor.is_some()
+        || learned.oxygen_gain_mg_l.is_some();
+    let moved = |band: (f64, f64), by: f64| (band.0 + by, band.1 + by);
+    let rows = pairs.iter().map(|pair| {
+        let (temperature_c, oxygen_mg_l) = pair.with(learned);
+        let (warmth, breath) = (pair.temperature_row(), pair.oxygen_row());
+        let gained = oxygen_mg_l.zip(pair.computed_mg_l).map(|(with, plain)| with - plain);
+        (
+            Row {
+                expected: Some(temperature_c),
+                band: Some(moved(pair.band_c, temperature_c - pair.computed_c)),
+                ..warmth
+            },
+            Row {
+                expected: oxygen_mg_l,
+                band: pair.band_mg_l.zip(gained).map(|(band, by)| moved(band, by)),
+                ..breath
+            },
+        )
+    });
+    let (warmth, breath): (Vec<Row>, Vec<Row>) = rows.unzip();
+    taught.then(|| (Score::of(&warmth), Score::of(&breath)))
+}
+
+/// The days as they are shown.
+fn shown(site: &Site, days: &[Known], paired: &Paired, gauge: &Daily) -> Vec<PastDay> {
+    let applied = applied(site);
+    let pairs: BTreeMap<NaiveDate, &Pair> =
+        paired.pairs.iter().chain(&paired.beside).map(|pair| (pair.date, pair)).collect();
+    let left: BTreeMap<NaiveDate, &Left> = paired.left_out.iter().map(|left| (left.date, left)).collect();
+    let one = |day: &Known| {
+        let pair = pairs.get(&day.date);
+        let plain = pair.map(|pair| (pair.computed_c, pair.computed_mg_l));
+        let with = applied.and_then(|learned| Some(pair?.with(learned)));
+        let expected = with.or(plain);
+        let shift = |of: Option<f64>, from: Option<f64>| of.zip(from).map_or(0.0, |(of, from)| of - from);
+        let (by_c, by_mg_l) = (
+            shift(expected.map(|e| e.0), plain.map(|p| p.0)),
+            shift(expected.and_then(|e| e.1), plain.and_then(|p| p.1)),
+        );
+        let moved = |(low, high): (f64, f64), by: f64| (low + by, high + by);
+        PastDay {
+            date: day.date,
+            decision: day.stood.as_ref().and_then(|stood| stood.decision),
+            expected_c: expected.map(|e| e.0),
+            plain_c: with.and(plain).map(|p| p.0),
+            band_c: pair.map(|pair| moved(pair.band_c, by_c)),
+            measured_c: gauge.temperature_c.on(day.date).map(|day| day.mean),
+            expected_mg_l: expected.and_then(|e| e.1),
+            plain_mg_l: with.and(plain).and_then(|p| p.1),
+            band_mg_l: pair.and_then(|pair| pair.band_mg_l).map(|band| moved(band, by_mg_l)),
+            measured_mg_l: gauge.oxygen_mg_l.on(day.date).map(|day| day.mean),
+            left_out: left.get(&day.date).map(|left| left.why.words()),
+        }
+    };
+    days.iter().map(one).collect()
 }
