@@ -4,6 +4,8 @@
 //! Methods: `docs/methods.md`, section 9.
 
 mod days;
+mod hindcast;
+mod spells;
 mod stood;
 mod turned;
 
@@ -13,6 +15,7 @@ use chrono::NaiveDate;
 
 use crate::problem::Problem;
 use crate::rank::Progress;
+pub use crate::record::Cause;
 use crate::record::{
     Learned, Learning, Left, Pair, Paired, Row, Score, Scores, WINDOW_DAYS, learn, pairs, scores,
 };
@@ -22,6 +25,8 @@ use crate::target::DAM;
 use crate::tasks::{Context, Failure};
 
 use days::{Known, casts, known};
+use hindcast::hindcast;
+use spells::{From, spells};
 use stood::Tellers;
 use turned::turned;
 
@@ -66,19 +71,6 @@ pub struct Turned {
     pub places: Vec<(String, Score, Score)>,
 }
 
-/// Something that may be why the gauge left the band.
-#[derive(Debug, Clone, PartialEq)]
-pub struct Cause {
-    /// What it is, in plain words that blame nobody.
-    pub name: &'static str,
-    /// What speaks for it.
-    pub speaks_for: Vec<String>,
-    /// What speaks against it.
-    pub against: Vec<String>,
-    /// What would tell, where neither does.
-    pub to_tell: &'static str,
-}
-
 /// Days in a row on which the gauge lay outside the band.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Spell {
@@ -103,6 +95,8 @@ pub struct Scored {
     pub degree_days_c: f64,
     /// Days that could be judged.
     pub judged: usize,
+    /// Days at the end that it does not reach, because no mix was allowed any more.
+    pub lost: usize,
 }
 
 /// A past season gone through again.
@@ -163,22 +157,34 @@ pub fn past(context: &Context, progress: Progress) -> Result<Past, Failure> {
         .collect();
     let nothing = Daily::default();
     let gauge = gauges.get(DAM).unwrap_or(&nothing);
-    let days = known(context, &tellers, &casts(context), gauge);
+    let casts = casts(context);
+    let days = known(context, &tellers, &casts, gauge);
     let told: Vec<_> = days.iter().map(Known::day).collect();
     let paired = pairs(site, &told, gauge, &|done| progress(DAYS * done)).ok_or(Failure::Stopped)?;
     let learning = learn(site, &paired.pairs, WINDOW_DAYS);
+    let later = |done: f64| progress(DAYS + (1.0 - DAYS) * done);
+    let hindcast = hindcast(context, &tellers, &casts, gauge, &later)?;
     let warmth: Vec<_> = paired.pairs.iter().map(Pair::temperature_row).collect();
     let breath: Vec<_> = paired.pairs.iter().map(Pair::oxygen_row).collect();
+    let shown = shown(site, &days, &paired, gauge);
+    let spells = spells(&From {
+        context,
+        days: &shown,
+        known: &days,
+        pairs: &paired.pairs,
+        casts: &casts,
+        suspect: learning.suspect.as_ref(),
+    });
     Ok(Past {
-        days: shown(site, &days, &paired, gauge),
+        days: shown,
         decisions: turned(&tellers, &days, &gauges),
         temperature: scores(&warmth),
         oxygen: scores(&breath),
         with_learned: with(&paired.pairs, &learning.learned),
         left_out: paired.left_out,
         learning,
-        spells: Vec::new(),
-        hindcast: Err("the season was not gone through again".into()),
+        spells,
+        hindcast,
         notes: tellers.notes,
     })
 }

@@ -140,7 +140,7 @@ pub(super) const NOON: NaiveTime = match NaiveTime::from_hms_opt(12, 0, 0) {
 
 /// Whether gates stood otherwise: by the shares of the release that they carry, by the whole of it, or by their openings.
 /// What is known on one side alone counts as a change.
-fn differ(a: Option<&Stood>, b: Option<&Stood>) -> bool {
+pub(super) fn differ(a: Option<&Stood>, b: Option<&Stood>) -> bool {
     let (Some(a), Some(b)) = (a, b) else { return a.is_some() != b.is_some() };
     let total = |of: &Stood| of.gates.iter().map(|gate| gate.flow_m3s).sum::<f64>();
     let (before, after) = (total(a), total(b));
