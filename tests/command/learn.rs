@@ -39,7 +39,7 @@ fn scenario_the_third_site_is_learned_and_its_lines_are_read_back() {
     assert_eq!(fs::read_to_string(&site).unwrap(), before, "nothing is written");
     let learned = &answer["learned"];
     let dates: Vec<&str> = list(&learned["casts"]).iter().map(|c| c["date"].as_str().unwrap()).collect();
-    assert_eq!(dates, ["2026-05-19", "2026-06-09", "2026-06-30"]);
+    assert_eq!(dates, ["2026-06-02", "2026-06-16", "2026-06-30"]);
     assert_eq!(learned["plan"], "past spring");
     assert!(learned["schedule_file"].as_str().unwrap().ends_with("past-2026.csv"));
     assert_eq!(list(&learned["knobs"]).len(), 4);
@@ -90,7 +90,7 @@ fn scenario_a_knob_at_an_end_is_marked_and_casts_are_named() {
     // wind of so far above the water is weak at it, and too weak for what it did
     let weather = fs::read_to_string(folder.join("weather.csv")).unwrap();
     fs::write(folder.join("weather.csv"), with(&weather, "wind height: 10 m", "wind height: 60 m")).unwrap();
-    let text = run(&["season", folder.to_str().unwrap(), "--learn", "2026-04-14,2026-05-19.csv,2026-06-09"]);
+    let text = run(&["season", folder.to_str().unwrap(), "--learn", "2026-04-07,2026-05-19.csv,2026-06-09"]);
     assert_eq!(text.code, Some(0), "{}", text.err);
     let row = text.out.lines().find(|line| line.contains("wind share, %")).unwrap();
     assert!(!text.out.contains("mean figures stand for it"), "{}", text.out);
