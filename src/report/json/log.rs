@@ -6,8 +6,9 @@ use crate::record::Decided;
 use crate::record::line::{Decision, Event, Line};
 use crate::report::caution;
 use crate::tasks::Context;
-use crate::tasks::log::Logged;
+use crate::tasks::log::{Logged, Past};
 
+use super::past::PastJson;
 use super::shape::{Head, ProblemJson};
 use super::{head, problem, written};
 
@@ -17,6 +18,7 @@ struct LogJson<'a> {
     head: Head,
     decisions: Vec<DecidedJson<'a>>,
     events: Vec<&'a Event>,
+    past: PastJson,
     problems: Vec<ProblemJson>,
     caution: &'static str,
 }
@@ -40,11 +42,12 @@ struct LoggedJson<'a> {
 }
 
 /// The answer of `log`.
-pub fn log(context: &Context) -> String {
+pub fn log(context: &Context, past: &Past) -> String {
     written(&LogJson {
         head: head(context, &context.fingerprint, &[]),
         decisions: context.log.log.decisions().iter().map(|decided| one(context, decided)).collect(),
         events: context.log.log.events(),
+        past: super::past::past(context, past),
         problems: context.log.problems.iter().map(problem).collect(),
         caution: caution(),
     })

@@ -3,6 +3,7 @@
 mod learned;
 mod log;
 mod needed;
+mod past;
 mod rank;
 mod rank_shape;
 mod river;

@@ -123,11 +123,13 @@ pub struct Past {
     pub days: Vec<PastDay>,
     /// Every decision that stood on a past day, by number.
     pub decisions: Vec<Turned>,
-    /// The whole past, temperature.
+    /// The whole past, temperature, with nothing learned.
     pub temperature: Scores,
     /// And oxygen.
     pub oxygen: Scores,
-    /// The same with what the record teaches, whether applied or not.
+    /// The same with what the site file applies of the learned; `None` where it applies nothing.
+    pub with_applied: Option<(Score, Score)>,
+    /// The same with what the record teaches, whether applied or not: fitted on these very days.
     pub with_learned: Option<(Score, Score)>,
     /// Days left out, each with its reason.
     pub left_out: Vec<Left>,
@@ -180,6 +182,7 @@ pub fn past(context: &Context, progress: Progress) -> Result<Past, Failure> {
         decisions: turned(&tellers, &days, &gauges),
         temperature: scores(&warmth),
         oxygen: scores(&breath),
+        with_applied: applied(site).and_then(|learned| with(&paired.pairs, learned)),
         with_learned: with(&paired.pairs, &learning.learned),
         left_out: paired.left_out,
         learning,

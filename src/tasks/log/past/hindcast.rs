@@ -31,17 +31,21 @@ enum Way {
 }
 
 impl Way {
-    /// Its share of the work (choice: thrift tries some forty seasons).
-    fn share(self) -> f64 {
-        if self == Self::Thrift { 0.85 } else { 0.05 }
-    }
-
     fn words(self) -> &'static str {
         match self {
             Self::AsSet => "as it was set",
             Self::Nothing => "doing nothing: the gates of the first day, moved only where a limit forces it",
             Self::Best => "the best mix of each day",
             Self::Thrift => "cold water weighed over the whole season",
+        }
+    }
+
+    /// What perfect hindsight is called where this is it.
+    fn in_hindsight(self) -> String {
+        match self {
+            Self::AsSet => "perfect hindsight: nothing better than what was set".to_owned(),
+            Self::Nothing => "perfect hindsight: nothing better than doing nothing".to_owned(),
+            Self::Best | Self::Thrift => format!("perfect hindsight: {}", self.words()),
         }
     }
 }
@@ -58,11 +62,10 @@ pub(super) fn hindcast(
         Ok(season) => season,
         Err(why) => return Ok(Err(why)),
     };
-    let ways = [Way::Thrift, Way::AsSet, Way::Nothing, Way::Best];
+    // of equal ones the first counts as hindsight
+    let ways = [Way::AsSet, Way::Nothing, Way::Best, Way::Thrift];
     // the others take little: what thrift has done is told for all
-    let tell = |way: Way, done: f64| {
-        if way == Way::Thrift { progress(Way::Thrift.share() * done) } else { progress(0.0) }
-    };
+    let tell = |way: Way, done: f64| progress(if way == Way::Thrift { done } else { 0.0 });
     let runs =
         ways.par_iter().map(|way| season.run(*way, &|done| tell(*way, done))).collect::<Option<Vec<_>>>();
     let Some(runs) = runs else {
@@ -84,11 +87,9 @@ pub(super) fn hindcast(
             .cmp(&(b.lost, b.days_outside))
             .then(a.degree_days_c.total_cmp(&b.degree_days_c))
     };
-    let best = scored.iter().map(|(_, scored)| scored).min_by(|a, b| order(a, b));
-    let hindsight = best.map_or_else(
-        || as_set.clone(),
-        |best| Scored { name: format!("perfect hindsight: {}", best.name), ..best.clone() },
-    );
+    let best = scored.iter().min_by(|a, b| order(&a.1, &b.1));
+    let named = |(way, scored): &(Way, Scored)| Scored { name: way.in_hindsight(), ..scored.clone() };
+    let hindsight = best.map_or_else(|| as_set.clone(), named);
     Ok(Ok(Hindcast {
         days: (season.begins, season.ends),
         plan: season.plan.name.clone(),
