@@ -18,6 +18,7 @@ use crate::record::line::{Decision, Event, Line};
 use super::{Context, Failure};
 
 pub use asked::{DecisionAsked, EventAsked};
+pub(super) use decided::gates;
 pub use past::{Cause, Hindcast, Past, PastDay, Scored, Spell, Turned, past};
 
 /// What was written.
