@@ -6,6 +6,7 @@
 mod aeration;
 mod check;
 mod limits;
+mod order_texts;
 mod outlet;
 mod pool;
 mod raw;
@@ -25,6 +26,7 @@ pub use aeration::Aeration;
 pub use limits::{
     Avoid, Avoided, Bins, Block, Crew, GenerationLost, Layer, Limits, Outage, Reserved, ShareRule, Undrawn,
 };
+pub use order_texts::{HoldPoint, OrderTexts, RawOrder};
 pub use outlet::{Kind, Leakage, OpenPart, Opens, Outlet, Position, SAME_OPENING, Shape};
 pub use pool::{Pool, RawRow, WidthSource};
 pub use raw::{
@@ -262,6 +264,8 @@ pub struct Site {
     pub casts: Vec<ListedCast>,
     /// How the season ahead is looked at.
     pub season: SeasonInputs,
+    /// Texts of a change order, and how its moves are made.
+    pub order: OrderTexts,
     /// Invented data.
     pub demonstration: bool,
 }

@@ -11,10 +11,12 @@ mod driver;
 mod held;
 mod kept;
 mod keys;
+mod logged;
 mod numbers;
 mod prices;
 #[cfg(unix)]
 mod pty;
+mod record;
 mod screens;
 mod seasons;
 mod sites;

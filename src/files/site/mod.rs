@@ -1,6 +1,7 @@
 //! `site.yaml` into a raw site: every unknown key, wrong type and unit at once, each with its line.
 
 mod limits;
+mod order_texts;
 mod outlets;
 mod river;
 mod season;
@@ -193,6 +194,7 @@ fn raw_site(map: Map) -> Raw {
         pool_m: read.optional(m, "pool", Dimension::Length),
     });
     within(&map, "season", |m| raw.season = season::season(&read, m));
+    within(&map, "order", |m| raw.order = order_texts::texts(m));
     raw.demonstration = map.optional("demonstration").and_then(|v| v.boolean()).unwrap_or(false);
     map.finish();
     raw

@@ -198,7 +198,7 @@ fn wrapped(text: &str, indent: usize) -> String {
 }
 
 /// Words wrapped at so many cells, later lines indented.
-fn wrapped_at(text: &str, indent: usize, width: usize) -> String {
+pub(in crate::report) fn wrapped_at(text: &str, indent: usize, width: usize) -> String {
     let lead = text.len() - text.trim_start().len();
     let mut out = " ".repeat(lead);
     let mut used = lead;

@@ -4,6 +4,7 @@ mod aeration;
 mod limits;
 mod months;
 mod operation;
+mod order_texts;
 mod outlets;
 mod reaches;
 mod river;
@@ -73,6 +74,7 @@ impl Site {
         let (now, now_wells) = operation::now(raw, &outlets, &mut problems);
         spread::spread(raw, &mut problems);
         let season = season::season(raw, &mut problems);
+        let order = order_texts::texts(raw, &mut problems);
         coverage(raw, &mut problems);
         if any_refused(&problems) {
             return (None, problems);
@@ -107,6 +109,7 @@ impl Site {
                 columns: raw.columns.clone(),
                 casts: raw.casts.clone(),
                 season,
+                order,
                 demonstration: raw.demonstration,
             })
         })();

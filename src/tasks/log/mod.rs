@@ -18,6 +18,7 @@ use crate::record::line::{Decision, Event, Line};
 use super::{Context, Failure};
 
 pub use asked::{DecisionAsked, EventAsked};
+pub(super) use decided::gates;
 pub use past::{Cause, Hindcast, Past, PastDay, Scored, Spell, Turned, past};
 
 /// What was written.
@@ -107,7 +108,11 @@ fn problem_of(failure: &Failure) -> Problem {
     Problem::refused("log-amends", failure.words(), "read the log again")
 }
 
-fn path(context: &Context) -> Result<PathBuf, Failure> {
+/// The file that is written to.
+///
+/// # Errors
+/// A site inside the binary has none.
+pub fn path(context: &Context) -> Result<PathBuf, Failure> {
     context.folder.log_path().ok_or_else(|| {
         let words = "this demonstration is held inside the program: it has no log";
         let cure = "write it out with `gatemix demo`, and name that folder";

@@ -1,4 +1,14 @@
 //! A written piece, whatever the format it is read in: headings, words, tables, lines to be filled by hand, pictures.
+//! One shape, three writers; each cleans every text (`clean`) and then escapes it for its own format.
+
+mod clean;
+mod html;
+mod markdown;
+mod picture;
+mod table;
+mod text;
+
+pub use clean::clean;
 
 /// The formats a piece is written in.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -19,6 +29,15 @@ pub struct Page {
     pub title: String,
     /// What follows.
     pub blocks: Vec<Block>,
+}
+
+/// The piece in a format. The same piece gives the same bytes.
+pub fn written(page: &Page, format: Format) -> String {
+    match format {
+        Format::Markdown => markdown::written(page),
+        Format::Text => text::written(page),
+        Format::Html => html::written(page),
+    }
 }
 
 /// A part of a piece.
