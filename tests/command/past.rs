@@ -39,7 +39,8 @@ fn release(folder: &Folder, set: &[&str]) -> f64 {
 /// Two casts of one water, the gauge of the days between them.
 fn folder() -> (Folder, [f64; 3]) {
     let later = with(CAST, "2025-07-14", "2025-07-28");
-    let air = "season: { layer: 2, monthly: { air: 20, humidity: 60, wind: 2.5, cloud: 40 } }\n";
+    let air =
+        "season: { layer: 4, decide_days: 14, monthly: { air: 20, humidity: 60, wind: 2.5, cloud: 40 } }\n";
     let casts = [("2025-07-14.csv", CAST.as_bytes()), ("2025-07-28.csv", later.as_bytes())];
     let folder = Folder::new(&format!("{SITE}{air}"), &casts);
     let releases = [&BEFORE[..], &AFTER, &["N1=35"]].map(|set| release(&folder, set));

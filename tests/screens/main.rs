@@ -12,6 +12,7 @@ mod held;
 mod kept;
 mod keys;
 mod logged;
+mod noted;
 mod numbers;
 mod prices;
 #[cfg(unix)]
@@ -23,3 +24,4 @@ mod sites;
 mod storm;
 #[cfg(unix)]
 mod terminal;
+mod turned;

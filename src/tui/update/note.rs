@@ -216,3 +216,16 @@ fn scroll(model: &mut Model, to: impl Fn(usize) -> usize) {
     let last = note_rows(model);
     with(model, |session| session.note.scroll = to(session.note.scroll.min(last)).min(last));
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::tasks::{Asked, open};
+
+    #[test]
+    fn scenario_what_is_held_in_memory_is_saved_where_the_program_was_started() {
+        let asked = Asked { site: Some("ashlar".into()), ..Asked::default() };
+        let context = open(&asked, chrono::DateTime::UNIX_EPOCH).unwrap();
+        assert_eq!(folder(&context).join("notes/a.html"), Path::new("notes/a.html"));
+    }
+}
