@@ -6,6 +6,8 @@
     reason = "a test stops at its first surprise; some laws are exact"
 )]
 
+#[path = "laws/causes.rs"]
+mod causes;
 #[path = "laws/columns.rs"]
 mod columns;
 #[path = "laws/continuity.rs"]

@@ -3,6 +3,7 @@
 mod column;
 pub mod csv;
 pub mod json;
+pub mod note;
 pub mod page;
 mod sentence;
 pub mod text;

@@ -5,7 +5,10 @@
 
 mod aeration;
 mod check;
+mod learned;
+mod levels;
 mod limits;
+mod order_texts;
 mod outlet;
 mod pool;
 mod raw;
@@ -22,9 +25,12 @@ use crate::target::Target;
 use crate::units::{Datum, Folder};
 
 pub use aeration::Aeration;
+pub use learned::{Learned, RawLearned, WINDOW_DAYS};
+pub use levels::level_groups;
 pub use limits::{
     Avoid, Avoided, Bins, Block, Crew, GenerationLost, Layer, Limits, Outage, Reserved, ShareRule, Undrawn,
 };
+pub use order_texts::{HoldPoint, OrderTexts, RawOrder};
 pub use outlet::{Kind, Leakage, OpenPart, Opens, Outlet, Position, SAME_OPENING, Shape};
 pub use pool::{Pool, RawRow, WidthSource};
 pub use raw::{
@@ -165,6 +171,8 @@ pub struct BandInputs {
     pub flow_share: f64,
     /// Least zone factor.
     pub zone_low: f64,
+    /// Zone factor between the two halves of the members; 1 unless another was learned.
+    pub zone_middle: f64,
     /// Greatest zone factor.
     pub zone_high: f64,
     /// What the method misses, standard deviation, C.
@@ -185,6 +193,7 @@ impl Default for BandInputs {
             heave_max_m: 3.0,
             flow_share: 0.02,
             zone_low: 0.70,
+            zone_middle: 1.0,
             zone_high: 1.15,
             release_c: 0.4,
             release_mg_l: 0.5,
@@ -256,12 +265,18 @@ pub struct Site {
     pub checks: CastChecks,
     /// Spread of the perturbed cases.
     pub band: BandInputs,
+    /// What was learned and is applied: [`Site::learned`].
+    applied: Option<learned::Applied>,
+    /// Days that learning looks back.
+    pub learning_days: u64,
     /// Header words of the logger, mapped to ours.
     pub columns: Vec<(String, String)>,
     /// Casts whose time or pool the site file gives.
     pub casts: Vec<ListedCast>,
     /// How the season ahead is looked at.
     pub season: SeasonInputs,
+    /// Texts of a change order, and how its moves are made.
+    pub order: OrderTexts,
     /// Invented data.
     pub demonstration: bool,
 }

@@ -5,7 +5,7 @@ use crate::units::Folder;
 
 use super::{
     BandInputs, Bins, Block, CastChecks, Chemistry, Crew, GenerationLost, Leakage, ListedCast, Opens,
-    Position, RawRiver, RawRow, RawSeason, WidthSource,
+    Position, RawLearned, RawOrder, RawRiver, RawRow, RawSeason, WidthSource,
 };
 
 /// Pool as read.
@@ -329,6 +329,10 @@ pub struct Raw {
     pub checks: CastChecks,
     /// Band.
     pub band: BandInputs,
+    /// What was learned.
+    pub learned: RawLearned,
+    /// Days that learning looks back.
+    pub learning_days: Option<u64>,
     /// How much of a record must be there.
     pub coverage: Coverage,
     /// Header mapping.
@@ -337,6 +341,8 @@ pub struct Raw {
     pub casts: Vec<ListedCast>,
     /// How the season ahead is looked at.
     pub season: RawSeason,
+    /// Texts of a change order.
+    pub order: RawOrder,
     /// Invented data.
     pub demonstration: bool,
 }

@@ -25,6 +25,7 @@ mod casts;
 mod change;
 mod changed;
 mod day;
+pub mod learned;
 pub mod log;
 mod mix;
 pub mod note;
@@ -147,6 +148,8 @@ pub struct Context {
     pub said: Vec<Problem>,
     /// What was decided at the site.
     pub log: Arc<ReadLog>,
+    /// What is taken as set now instead of what the log and the site file say.
+    set_before: Option<Arc<Given>>,
     /// The cast's bytes.
     source: Source,
 }
@@ -197,7 +200,20 @@ impl Context {
         let fingerprint = fingerprint(&folder, &sources, &log);
         let conditions = folder.conditions();
         profile.flags.extend(apart::tailwater(&folder.site, &conditions, &profile));
-        Self { folder, profile, on, on_from, age_days, fingerprint, system, conditions, said, log, source }
+        Self {
+            folder,
+            profile,
+            on,
+            on_from,
+            age_days,
+            fingerprint,
+            system,
+            conditions,
+            said,
+            log,
+            set_before: None,
+            source,
+        }
     }
 }
 

@@ -1,7 +1,8 @@
 //! Answers as text a person can read aloud.
 
 mod gates;
-mod log;
+pub mod learned;
+pub mod log;
 mod mix;
 mod pool;
 pub mod rank;
@@ -21,7 +22,7 @@ use crate::tasks::{Context, Freshness, MixAnswer, PoolAnswer};
 use crate::units::{Dimension, System, show};
 
 pub use gates::{instruction, moves, openings};
-pub use log::{log, logged};
+
 pub use mix::{apart, difference, missed, release_line, release_words, setting_words, wells_changed};
 pub use pool::{cold_since_words, layer_words, reach_words, since_words};
 pub use targets::{EXAMPLE, named, range, standing_words};

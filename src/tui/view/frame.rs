@@ -257,6 +257,11 @@ pub(super) fn status(model: &Model, session: &Session) -> (String, Role) {
     if let Some(under) = model.needed.as_ref().filter(|under| is_long(model, under)) {
         return (format!("cold water needed {:.0} %, Esc stops", 100.0 * under.done), Role::Warn);
     }
+    for (under, what) in [(&model.past, "log"), (&model.note, "note")] {
+        if let Some(under) = under.as_ref().filter(|under| is_long(model, under)) {
+            return (format!("{what} {:.0} %, Esc on its screen stops", 100.0 * under.done), Role::Warn);
+        }
+    }
     let broken = broken_limits(session);
     if session.wrong.is_none() && session.screen == Screen::Mix && broken > 0 {
         let plural = if broken == 1 { "" } else { "s" };
