@@ -5,6 +5,7 @@
 mod aerated;
 mod ahead;
 mod answered;
+mod applied;
 mod casts;
 mod cautions;
 mod demo;

@@ -99,7 +99,9 @@ fn figures(given: &RawLearned, problems: &mut Vec<Problem>) {
         refuse(&key, words, CURE);
     }
     match (given.zone_factor, range) {
-        (Some(factor), Some((low, high))) if !(low..=high).contains(&factor) => {
+        (Some(factor), Some((low, high)))
+            if ZONE_FACTOR.contains(&factor) && !(low..=high).contains(&factor) =>
+        {
             let words = format!("zone_range {low:.2} to {high:.2} does not hold the zone factor {factor:.2}");
             refuse("zone_range", words, CURE);
         }
