@@ -38,7 +38,7 @@ pub fn save(saved: Saved) -> Event {
         let bytes = saved.text.as_bytes();
         if saved.replace { atomic::write(&saved.path, bytes) } else { atomic::create(&saved.path, bytes) }
     });
-    Event::Saved(saved, written.err())
+    Event::Saved(Box::new(saved), written.err())
 }
 
 type Errand = Box<dyn FnOnce() -> Option<Event> + Send>;

@@ -93,7 +93,7 @@ impl Driver {
                 Effect::Save(saved) if self.listed.is_some() => {
                     let there =
                         (!saved.replace).then(|| Problem::refused("exists", "it is there", "name another"));
-                    self.send(Event::Saved(saved, there));
+                    self.send(Event::Saved(Box::new(saved), there));
                 }
                 Effect::Log(entry) => self.send(tui::log(&entry, clock())),
                 Effect::Save(saved) => self.send(tui::save(saved)),

@@ -61,7 +61,7 @@ pub enum Event {
     /// What was logged, or why nothing was.
     Logged(Result<Box<Logged>, NotLogged>),
     /// What was to be saved, and why it could not be.
-    Saved(Saved, Option<Problem>),
+    Saved(Box<Saved>, Option<Problem>),
 }
 
 /// What is to be done outside the model.
@@ -134,7 +134,7 @@ pub fn update(model: &mut Model, event: Event) -> Vec<Effect> {
         Event::Sites(list) => list::listed(model, list),
         Event::Made(Ok(folder)) => open(model, folder),
         Event::Logged(logged) => logging::logged(model, logged),
-        Event::Saved(saved, problem) => note::saved(model, saved, problem),
+        Event::Saved(saved, problem) => note::saved(model, *saved, problem),
         Event::Made(Err(problem)) | Event::Said(problem) => {
             let system = model.system();
             complain(model, problem.text(system));
