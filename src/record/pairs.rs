@@ -124,6 +124,15 @@ pub struct Paired {
     pub beside: Vec<Pair>,
 }
 
+impl Paired {
+    /// Drops what is of other dates.
+    pub fn keep(&mut self, is_wanted: &dyn Fn(NaiveDate) -> bool) {
+        self.pairs.retain(|pair| is_wanted(pair.date));
+        self.left_out.retain(|left| is_wanted(left.date));
+        self.beside.retain(|pair| is_wanted(pair.date));
+    }
+}
+
 /// Holds every day against the gauge, as computed with nothing learned. `None` where `progress` stopped it.
 pub fn pairs(site: &Site, days: &[Day], gauge: &Daily, progress: Progress) -> Option<Paired> {
     // so that nothing is learned on top of what was

@@ -31,6 +31,7 @@ mod mix;
 pub mod note;
 mod pool;
 pub mod rank;
+pub mod report;
 pub mod river;
 pub mod season;
 mod setting;

@@ -19,6 +19,7 @@ use crate::report::sentence::flags_of;
 use super::{flow, labelled, list, oxygen, temperature, wrapped};
 
 pub use learning::{candidate, learning};
+pub(in crate::report) use past::{apart, count, signed, span};
 pub use past::{hindcast, left_out, level_name, scores, spell, spells, turned};
 
 /// The answer of `log`: every decision and event, the last first; then what happened.

@@ -17,9 +17,10 @@ use crate::record::line::{Decision, Event, Line};
 
 use super::{Context, Failure};
 
+pub(super) use asked::date;
 pub use asked::{DecisionAsked, EventAsked};
 pub(super) use decided::gates;
-pub use past::{Cause, Hindcast, Past, PastDay, Scored, Spell, Turned, past};
+pub use past::{Cause, Hindcast, Past, PastDay, Scored, Spell, Turned, past, past_within};
 
 /// What was written.
 #[derive(Debug, Clone, PartialEq)]

@@ -148,6 +148,18 @@ pub struct Past {
 /// # Errors
 /// [`Failure::Stopped`], where `progress` stops it.
 pub fn past(context: &Context, progress: Progress) -> Result<Past, Failure> {
+    past_within(context, (NaiveDate::MIN, NaiveDate::MAX), progress)
+}
+
+/// The same of the days of a span alone; what the record teaches is taken from all of it.
+///
+/// # Errors
+/// As [`past`].
+pub fn past_within(
+    context: &Context,
+    span: (NaiveDate, NaiveDate),
+    progress: Progress,
+) -> Result<Past, Failure> {
     let site = context.site();
     let tellers = Tellers::of(context);
     let gauges: BTreeMap<String, Daily> = context
@@ -159,12 +171,15 @@ pub fn past(context: &Context, progress: Progress) -> Result<Past, Failure> {
     let nothing = Daily::default();
     let gauge = gauges.get(DAM).unwrap_or(&nothing);
     let casts = casts(context);
-    let days = known(context, &tellers, &casts, gauge);
+    let mut days = known(context, &tellers, &casts, gauge);
     let told: Vec<_> = days.iter().map(Known::day).collect();
-    let paired = pairs(site, &told, gauge, &|done| progress(DAYS * done)).ok_or(Failure::Stopped)?;
+    let mut paired = pairs(site, &told, gauge, &|done| progress(DAYS * done)).ok_or(Failure::Stopped)?;
     let learning = learn(site, &paired.pairs, site.learning_days);
     let later = |done: f64| progress(DAYS + (1.0 - DAYS) * done);
     let hindcast = hindcast(context, &tellers, &casts, gauge, &later)?;
+    let is_inside = |date: NaiveDate| (span.0..=span.1).contains(&date);
+    days.retain(|day| is_inside(day.date));
+    paired.keep(&is_inside);
     let warmth: Vec<_> = paired.pairs.iter().map(Pair::temperature_row).collect();
     let breath: Vec<_> = paired.pairs.iter().map(Pair::oxygen_row).collect();
     let computed: BTreeMap<NaiveDate, &Pair> =

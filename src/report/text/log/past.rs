@@ -17,23 +17,23 @@ use crate::units::{Dimension, System, figure, in_system, show};
 const SPELLS: usize = 5;
 
 /// A bias or an error of temperature.
-pub(super) fn apart(c: f64, system: System) -> String {
+pub(in crate::report) fn apart(c: f64, system: System) -> String {
     show(c, Dimension::TemperatureDifference, system, 2)
 }
 
 /// The same with its sign.
-fn signed(c: f64, system: System) -> String {
+pub(in crate::report) fn signed(c: f64, system: System) -> String {
     let told = apart(c, system);
     if c > 0.0 && !told.starts_with('-') { format!("+{told}") } else { told }
 }
 
 /// `12 days`, `1 day`.
-pub(super) fn count(days: usize) -> String {
+pub(in crate::report) fn count(days: usize) -> String {
     format!("{days} day{}", if days == 1 { "" } else { "s" })
 }
 
 /// Dates as a sentence gives them.
-fn span((from, to): (NaiveDate, NaiveDate)) -> String {
+pub(in crate::report) fn span((from, to): (NaiveDate, NaiveDate)) -> String {
     if from == to { from.to_string() } else { format!("{from} to {to}") }
 }
 
