@@ -86,17 +86,17 @@ pub struct Curve {
 }
 
 impl Curve {
-    /// Solves a level at the flows it needs, up to `most_m3s`. `cold_c` is the threshold of cold water. `None` for a level out of the water.
+    /// Solves a level in a pool, with a factor on its zone, at the flows it needs, up to `most_m3s`. `cold_c` is the threshold of cold water. `None` for a level out of the water.
     ///
     /// Flows at which the zone meets bed or surface are knots, since the release bends there.
     pub fn new(
-        column: &Column,
+        (column, zone_factor): (&Column, f64),
         centre_m: f64,
         opening: Opening,
         most_m3s: f64,
         cold_c: Option<f64>,
     ) -> Option<Self> {
-        Self::cut((column, 1.0), (centre_m, opening), most_m3s, cold_c, &Cut::FINE)
+        Self::cut((column, zone_factor), (centre_m, opening), most_m3s, cold_c, &Cut::FINE)
     }
 
     /// The same cut as finely as is asked.

@@ -62,12 +62,12 @@ fn law_the_note_previewed_is_the_note_that_is_written() {
 fn scenario_the_note_says_what_it_is_of_and_what_keeps_it_from_being_signed() {
     let mut driver = opened(&usual("noted-of"));
     let text = driver.text();
-    assert!(text.contains("of the first ranked mix; no decision holds | sheet 1 of 2"), "{text}");
+    assert!(text.contains("of the first ranked mix, no decision holds | sheet 1/2"), "{text}");
     assert!(text.contains("NOT READY FOR SIGNATURE"), "{text}");
     driver.keys("t");
     assert!(driver.text().contains("of the try of the mix screen"), "{}", driver.text());
     let text = driver.keys("Right").text();
-    assert!(text.contains("sheet 2 of 2, agency note"), "{text}");
+    assert!(text.contains("sheet 2/2, agency note"), "{text}");
     let text = opened(&logged("noted-of-decision")).text();
     assert!(text.contains("of decision 4 of the log"), "{text}");
 }
@@ -148,5 +148,5 @@ fn scenario_a_note_is_stopped_and_made_again() {
     assert!(driver.text().contains("there is no note to save yet"), "{}", driver.text());
     driver.keys("r");
     driver.settle();
-    assert!(driver.text().contains("sheet 1 of 2"), "{}", driver.text());
+    assert!(driver.text().contains("sheet 1/2"), "{}", driver.text());
 }

@@ -60,7 +60,7 @@ pub enum LogSpan {
 /// Where the user is on the log screen.
 #[derive(Debug, Clone, Default)]
 pub struct LogView {
-    /// The day read; the last of the past when absent.
+    /// The day read; when absent the last of the past that can be held against the gauge, else the last.
     pub day: Option<NaiveDate>,
     /// The decision chosen, by the number it was first written under; the newest when absent.
     pub decision: Option<u64>,
@@ -96,7 +96,9 @@ impl Session {
         let days = self.past_days();
         let last = days.len().checked_sub(1)?;
         let of = |date: NaiveDate| days.iter().position(|day| day.date >= date).unwrap_or(last);
-        Some(self.log.day.map_or(last, of))
+        let told = |day: &PastDay| day.expected_c.is_some() && day.measured_c.is_some();
+        let newest = || days.iter().rposition(told).unwrap_or(last);
+        Some(self.log.day.map_or_else(newest, of))
     }
 
     /// The days that the time line shows.

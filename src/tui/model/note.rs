@@ -135,7 +135,8 @@ fn sheets(page: &Page) -> Vec<Vec<String>> {
     let sheet = |(at, blocks): (usize, &[Block])| {
         // the title stands over the first, as it is printed
         let title = if at == 0 { page.title.clone() } else { String::new() };
-        written(&Page { title, blocks: blocks.to_vec() }, Format::Text).lines().map(str::to_owned).collect()
+        let text = written(&Page { title, blocks: blocks.to_vec() }, Format::Text);
+        text.lines().skip_while(|line| line.is_empty()).map(str::to_owned).collect()
     };
     parts.enumerate().map(sheet).collect()
 }

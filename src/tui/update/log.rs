@@ -142,7 +142,8 @@ fn read(session: &mut Session, day: NaiveDate) {
 fn step(model: &mut Model, by: i64) {
     with(model, |session| {
         let Some((first, last)) = ends(session) else { return };
-        let at = session.log.day.unwrap_or(last);
+        let now = session.past_read().and_then(|at| session.past_days().get(at));
+        let at = now.map_or(last, |day| day.date);
         let far = Days::new(by.unsigned_abs());
         let to = if by < 0 { at.checked_sub_days(far) } else { at.checked_add_days(far) };
         let to = to.unwrap_or(if by < 0 { first } else { last }).clamp(first, last);

@@ -18,9 +18,7 @@ use crate::units::in_system;
 
 use super::failure_words;
 use super::scroll::{self, Lines, say};
-
-/// Most lines that what keeps it from being ready takes (choice).
-const READY: usize = 3;
+use super::write::cut;
 
 /// Draws the note screen.
 pub(super) fn draw(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
@@ -71,37 +69,33 @@ fn head(model: &Model, session: &Session, width: usize) -> Lines {
     let sheet = session.note.sheet;
     let end = FORMATS.iter().find(|(of, _)| *of == session.note.format).map_or("", |of| of.1);
     let words = format!(
-        "of {} | sheet {} of {}, {} | saved as {end}",
+        "of {} | sheet {}/{}, {} | as {end}",
         of(noted),
         sheet + 1,
         noted.sheets.len(),
         names.get(sheet).copied().unwrap_or("")
     );
     say(&mut out, &words, width, 2, Role::Strong);
-    not_ready(noted, model, width, &mut out);
+    out.extend(not_ready(noted, model, width).map(|words| (words, Role::Outside)));
     out
 }
 
-fn not_ready(noted: &Noted, model: &Model, width: usize, out: &mut Lines) {
+/// That it is not ready for signature, in one line; the first sheet has every reason.
+fn not_ready(noted: &Noted, model: &Model, width: usize) -> Option<String> {
     let reasons = &noted.answer.not_ready;
-    if reasons.is_empty() {
-        return;
-    }
-    let reasons: Vec<String> = reasons.iter().map(|why| harmless(&in_system(why, model.system()))).collect();
-    let mut lines = Lines::new();
-    say(&mut lines, &format!("NOT READY FOR SIGNATURE: {}", reasons.join("; ")), width, 2, Role::Outside);
-    if lines.len() > READY {
-        lines.truncate(READY - 1);
-        lines.push((format!("  ... {} reasons in all, on the first sheet", reasons.len()), Role::Outside));
-    }
-    out.extend(lines);
+    let first = harmless(&in_system(reasons.first()?, model.system()));
+    let words = match reasons.len() {
+        1 => format!("NOT READY FOR SIGNATURE: {first}"),
+        count => format!("NOT READY FOR SIGNATURE, {count} reasons: {first}"),
+    };
+    Some(cut(&words, width))
 }
 
 /// What a note is of.
 fn of(noted: &Noted) -> String {
     match noted.answer.subject {
         Subject::Decision(id) => format!("decision {id} of the log"),
-        Subject::FirstRanked => "the first ranked mix; no decision holds".to_owned(),
+        Subject::FirstRanked => "the first ranked mix, no decision holds".to_owned(),
         Subject::Named => "the try of the mix screen".to_owned(),
     }
 }

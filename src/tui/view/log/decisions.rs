@@ -27,12 +27,13 @@ pub(super) fn draw(screen: &Screen, area: Rect, buf: &mut Buffer) {
         return;
     }
     let at = screen.session.decision_at().unwrap_or(0);
-    put(buf, area, 0, 0, &cut(HEAD, usize::from(area.width)), look.style(Role::Quiet));
+    let years = area.width >= YEARS;
+    put(buf, area, 0, 0, &cut(HEAD[usize::from(years)], usize::from(area.width)), look.style(Role::Quiet));
     let rows = Rect { y: area.y + 1, height: area.height.saturating_sub(1), ..area };
     let from = first_line(at, all.len(), rows.height);
     for (row, (i, decided)) in (0..rows.height).zip(all.iter().enumerate().skip(from)) {
         let mark = if i == at { ">" } else { " " };
-        let line = format!("{mark}{}", line(screen, decided));
+        let line = format!("{mark}{}", line(screen, decided, years));
         put(buf, rows, 0, row, &cut(&line, usize::from(rows.width)), look.style(Role::Plain));
         if i == at {
             row_style(buf, rows, row, look.style(Role::Chosen));
@@ -52,11 +53,13 @@ fn none(screen: &Screen, width: usize) -> Vec<String> {
 }
 
 /// Heads of the columns.
-const HEAD: &str = " no.  from        bias       inside  by";
+const HEAD: [&str; 2] = [" no.  from   bias       inside  by", " no.  from        bias       inside  by"];
+/// Columns from which the year is told (choice: a name has its room then).
+const YEARS: u16 = 56;
 
 /// `  8  2026-06-23  +0.4 F     5/7     weekly gate meeting`.
-fn line(screen: &Screen, decided: &Decided) -> String {
-    let from = screen.session.stands_from(decided).format("%Y-%m-%d");
+fn line(screen: &Screen, decided: &Decided, years: bool) -> String {
+    let from = screen.session.stands_from(decided).format(if years { "%Y-%m-%d" } else { "%m-%d" });
     let (bias, inside) = match outcome(screen, decided.id).map(|score| (score, score.misfit)) {
         Some((score, Some(misfit))) => {
             (screen.by(misfit.bias), format!("{}/{}", score.inside, score.with_band))
