@@ -75,7 +75,7 @@ fn held(page: &Page) -> Result<Html, TestCaseError> {
             prop_assert!(attribute == "xmlns" || !value.contains("://"), "{}={}", attribute, value);
         }
     }
-    let style = all(&html, "style").iter().map(|s| s.inner_html()).collect::<String>();
+    let style = all(&html, "style").iter().map(ElementRef::inner_html).collect::<String>();
     prop_assert!(!style.contains("url(") && !style.contains("@import") && !style.contains("http"));
     for table in all(&html, "table") {
         let cells = |row: ElementRef| row.child_elements().count();

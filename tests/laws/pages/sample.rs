@@ -150,25 +150,26 @@ pub(super) fn with(text: &str) -> Page {
 
 /// A picture with every name in it replaced.
 fn named(shows: Shows, text: &str) -> Shows {
+    let t = || text.to_owned();
     match shows {
         Shows::Pool(mut p) => {
-            p.elevation_unit = text.to_owned();
-            p.temperature_unit = text.to_owned();
-            p.outlets.iter_mut().for_each(|o| o.0 = text.to_owned());
-            p.zones.iter_mut().for_each(|z| z.0 = text.to_owned());
+            p.elevation_unit = t();
+            p.temperature_unit = t();
+            p.outlets.iter_mut().for_each(|o| o.0 = t());
+            p.zones.iter_mut().for_each(|z| z.0 = t());
             Shows::Pool(p)
         }
         Shows::Ranges(mut r) => {
-            r.unit = text.to_owned();
-            r.rows.iter_mut().for_each(|row| row.0 = text.to_owned());
+            r.unit = t();
+            r.rows.iter_mut().for_each(|row| row.0 = t());
             Shows::Ranges(r)
         }
         Shows::Days(mut d) => {
-            d.axis = text.to_owned();
-            d.bands.iter_mut().for_each(|b| b.0 = text.to_owned());
-            d.lines.iter_mut().for_each(|l| l.0 = text.to_owned());
-            d.limits.iter_mut().for_each(|l| l.0 = text.to_owned());
-            d.marks.iter_mut().for_each(|m| m.1 = text.to_owned());
+            d.axis = t();
+            d.bands.iter_mut().for_each(|b| b.0 = t());
+            d.lines.iter_mut().for_each(|l| l.0 = t());
+            d.limits.iter_mut().for_each(|l| l.0 = t());
+            d.marks.iter_mut().for_each(|m| m.1 = t());
             Shows::Days(d)
         }
     }
