@@ -162,7 +162,7 @@ pub fn spells(context: &Context, past: &Past) -> Vec<String> {
     told.sort_by_key(|spell| spell.days);
     let mut out: Vec<String> = told.into_iter().flat_map(|told| spell(told, system)).collect();
     if more > 0 {
-        out.push(format!("{more} smaller ones more: log --json tells all"));
+        out.push(format!("smaller ones beside these: {more}; log --json tells all"));
     }
     out
 }
@@ -176,7 +176,11 @@ pub fn spell(spell: &Spell, system: System) -> Vec<String> {
         signed(spell.off_c, system)
     )];
     let likely = |cause: &&Cause| !cause.speaks_for.is_empty();
-    let first = spell.causes.iter().take(2).filter(likely).count().max(1);
+    // what nothing speaks for is not told as if it might be
+    let first = spell.causes.iter().take(2).take_while(likely).count();
+    if first == 0 {
+        out.push("  nothing that is known speaks for one cause before the others".into());
+    }
     for (at, cause) in spell.causes.iter().take(first).enumerate() {
         let lead = if at == 0 { "may be" } else { "or" };
         out.push(format!("  {lead} {}", cause.name));
