@@ -15,9 +15,7 @@ use crate::mix::{Perturbed, Setting, groups};
 use crate::profile::Profile;
 use crate::rank::Progress;
 use crate::series::{Daily, Days};
-use crate::site::Site;
-
-use super::learn::Learned;
+use crate::site::{Learned, Site};
 
 pub use curve::{Curve, ZONE_FACTORS};
 
@@ -135,8 +133,11 @@ impl Paired {
     }
 }
 
-/// Holds every day against the gauge. `None` where `progress` stopped it.
+/// Holds every day against the gauge, as computed with nothing learned. `None` where `progress` stopped it.
 pub fn pairs(site: &Site, days: &[Day], gauge: &Daily, progress: Progress) -> Option<Paired> {
+    // so that nothing is learned on top of what was
+    let plain = site.without_learned();
+    let site = plain.as_ref().unwrap_or(site);
     let groups = groups(site);
     let done = AtomicUsize::new(0);
     let one = |day: &Day| {

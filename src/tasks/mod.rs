@@ -25,6 +25,7 @@ mod casts;
 mod change;
 mod changed;
 mod day;
+pub mod learned;
 pub mod log;
 mod mix;
 pub mod note;

@@ -17,6 +17,7 @@ mod log;
 mod log_kept;
 mod loggers;
 mod new;
+mod note;
 mod past;
 mod prices;
 mod rank;

@@ -16,6 +16,7 @@ pub(super) fn written(page: &Page) -> String {
     out
 }
 
+/// Points, facts and blanks have each their bullet, since lists of one bullet that follow each other become one.
 fn one(block: &Block) -> String {
     match block {
         Block::Heading(level, text) => {
@@ -25,11 +26,11 @@ fn one(block: &Block) -> String {
         Block::Warning(text) => format!("**Warning:** {}\n", escaped(text)),
         Block::List(texts) => texts.iter().map(|text| format!("- {}\n", escaped(text))).collect(),
         Block::Facts(facts) => {
-            facts.iter().map(|(l, value)| format!("- {} {}\n", bold(l), escaped(value))).collect()
+            facts.iter().map(|(l, value)| format!("* {} {}\n", bold(l), escaped(value))).collect()
         }
         Block::Table(table) => rows(&Squared::of(table)),
         Block::Blanks(labels) => {
-            labels.iter().map(|label| format!("- {}: {RULE}\n", escaped(label))).collect()
+            labels.iter().map(|label| format!("+ {}: {RULE}\n", escaped(label))).collect()
         }
         Block::Picture(picture) => {
             format!("> {} {}\n", bold(&format!("Picture: {}", picture.title)), escaped(&picture.words))

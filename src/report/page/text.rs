@@ -54,7 +54,8 @@ fn hung(lead: &str, text: &str) -> String {
     let indent = lead.width();
     let body = wrapped_at(&format!("{:indent$}{}", "", clean(text)), indent, WIDTH);
     // the blanks of the first line are as many as the lead is wide
-    format!("{lead}{}", body.get(indent..).unwrap_or_default())
+    let text = format!("{lead}{}", body.get(indent..).unwrap_or_default());
+    format!("{}\n", text.trim_end())
 }
 
 fn told(facts: &[(String, String)]) -> String {
@@ -111,7 +112,7 @@ fn rows(table: &Squared) -> String {
 
 /// Widths of the columns: as their cells need, the widest narrowed until the row fits. `None` where it does not.
 fn widths(table: &Squared) -> Option<Vec<usize>> {
-    let mut widths: Vec<usize> = table.head.iter().map(|cell| cell.width()).collect();
+    let mut widths: Vec<usize> = table.head.iter().map(|cell| cell.width().max(1)).collect();
     for row in &table.rows {
         widths.iter_mut().zip(row).for_each(|(wide, cell)| *wide = (*wide).max(cell.width()));
     }

@@ -73,6 +73,17 @@ fn happened(context: &Context, past: &Past) -> String {
     out.push_str(&section("Outside the band", indented(spells(context, past))));
     out.push_str(&section("The season gone through again", indented(hindcast(context, past))));
     out.push_str(&section("What the record teaches", indented(learning(context, past))));
+    out.push_str(&section(
+        "What is applied",
+        indented(super::learned::applied(context.site(), context.system).into_iter().collect()),
+    ));
+    if let Some(lines) = super::learned::learned_yaml(context.site(), &past.learning) {
+        out.push_str("For site.yaml, in the place of `learned` where it has one; nothing was written\n");
+        for line in lines.lines() {
+            _ = writeln!(out, "  {}", harmless(line));
+        }
+        out.push('\n');
+    }
     let notes: Vec<&Problem> = past.notes.iter().collect();
     out.push_str(&list("Assumed", &notes, false, context.system));
     out

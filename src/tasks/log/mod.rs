@@ -109,7 +109,11 @@ fn problem_of(failure: &Failure) -> Problem {
     Problem::refused("log-amends", failure.words(), "read the log again")
 }
 
-fn path(context: &Context) -> Result<PathBuf, Failure> {
+/// The file that is written to.
+///
+/// # Errors
+/// A site inside the binary has none.
+pub fn path(context: &Context) -> Result<PathBuf, Failure> {
     context.folder.log_path().ok_or_else(|| {
         let words = "this demonstration is held inside the program: it has no log to write";
         let cure = "write it out with `gatemix demo`, and name that folder";

@@ -110,7 +110,14 @@ pub fn downstream(
         days: Vec::new(),
         timely: Vec::new(),
         observed: observed::observed(context),
-        notes: context.said.iter().cloned().chain(context.rules_off()).chain(notes(context)).collect(),
+        notes: context
+            .said
+            .iter()
+            .cloned()
+            .chain(context.rules_off())
+            .chain(context.learned_flags())
+            .chain(notes(context))
+            .collect(),
     };
     if let Some(way) = answer.spoken() {
         let windows = asked::windows(context, way);

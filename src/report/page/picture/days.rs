@@ -43,7 +43,7 @@ pub(super) fn draw(paper: &Paper, days: &DaysPicture) -> Option<()> {
     let limits = days.limits.iter().flat_map(|(_, from, to, value)| [(*from, *value), (*to, *value)]);
     let all: Vec<(NaiveDate, f64)> = banded.chain(lined).chain(limits).filter(|p| p.1.is_finite()).collect();
     let first = all.iter().map(|p| p.0).min()?;
-    let last = all.iter().map(|p| p.0).max()?.max(first + Days::new(1));
+    let last = all.iter().map(|p| p.0).max()?.max(first.checked_add_days(Days::new(1))?);
     let low = all.iter().map(|p| p.1).reduce(f64::min)?;
     let high = all.iter().map(|p| p.1).reduce(f64::max)?;
     let names = days.lines.iter().map(|l| words_mm(&l.0)).fold(0.0, f64::max);
