@@ -11,6 +11,7 @@ use crate::mix::TargetStanding;
 use crate::problem::{Problem, any_refused, harmless};
 use crate::report::{self, json, text};
 use crate::tasks::rank::RankAsked;
+use crate::tasks::report::ReportAsked;
 use crate::tasks::season::SeasonAsked;
 use crate::tasks::{self, Asked, Failure};
 use crate::tui;
@@ -171,6 +172,18 @@ pub(super) fn answer(cli: &Cli, clock: DateTime<Utc>, progress: Progress) -> Res
                 json::note(&context, &answer)
             } else {
                 piece.written(&report::note::page(&context, &answer))?
+            };
+            (shown, End::Answered)
+        }
+        Some(Command::Report { common, from, to, piece }) => {
+            let context = tasks::open(&common.asked(), clock)?;
+            let asked = ReportAsked { from: from.clone(), to: to.clone() };
+            let answer = tasks::report::report(&context, &asked, &|done| progress.tell(done))?;
+            drop(progress);
+            let shown = if common.json {
+                json::report(&context, &answer)
+            } else {
+                piece.written(&report::annual::page(&context, &answer))?
             };
             (shown, End::Answered)
         }

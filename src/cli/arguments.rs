@@ -132,6 +132,19 @@ pub(super) enum Command {
         #[command(flatten)]
         piece: Piece,
     },
+    /// A season for the annual meeting: targets against what was observed, decisions, how well it was foreseen.
+    Report {
+        #[command(flatten)]
+        common: Common,
+        /// First day; without it the first of the year of the last.
+        #[arg(long, value_name = "DATE")]
+        from: Option<String>,
+        /// Last day; without it the date of the answer.
+        #[arg(long, value_name = "DATE")]
+        to: Option<String>,
+        #[command(flatten)]
+        piece: Piece,
+    },
     /// Are my files sound? Every problem of the site file, of every cast and of every series.
     Check {
         /// Site folder.

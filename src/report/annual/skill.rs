@@ -6,6 +6,7 @@ use chrono::Month;
 use crate::record::Score;
 use crate::report::page::{Block, Table};
 use crate::report::text::log::{count, learning as teaches, left_out, level_name, signed, span};
+use crate::report::text::learned::applied;
 use crate::report::text::river::degree_days;
 use crate::tasks::Context;
 use crate::tasks::log::{Scored, Spell};
@@ -150,11 +151,7 @@ pub(super) fn learning(context: &Context, answer: &ReportAnswer) -> Vec<Block> {
     if lines.is_empty() {
         return Vec::new();
     }
-    let applied = match answer.past.with_applied {
-        None => "Nothing of it is applied: the site file names nothing of it.",
-        Some(_) => {
-            "What the site file names of it is applied; the scores above show the days with and without it."
-        }
-    };
-    vec![Block::List(lines), Block::Words(applied.to_owned())]
+    let none = || "Nothing of it is applied: the site file names nothing of it".to_owned();
+    let words = applied(context.site(), context.system).unwrap_or_else(none);
+    vec![Block::List(lines), Block::Words(format!("{words}."))]
 }

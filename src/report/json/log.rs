@@ -27,7 +27,7 @@ struct LogJson<'a> {
 }
 
 #[derive(Serialize)]
-struct DecidedJson<'a> {
+pub(super) struct DecidedJson<'a> {
     decision: u64,
     set_now: bool,
     amended: usize,
@@ -57,7 +57,8 @@ pub fn log(context: &Context, past: &Past) -> String {
     })
 }
 
-fn one<'a>(context: &Context, decided: &Decided<'a>) -> DecidedJson<'a> {
+/// A decision as it stands.
+pub(super) fn one<'a>(context: &Context, decided: &Decided<'a>) -> DecidedJson<'a> {
     DecidedJson {
         decision: decided.id,
         set_now: decided.stands(context.on),

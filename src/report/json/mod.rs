@@ -8,6 +8,7 @@ mod note;
 mod past;
 mod rank;
 mod rank_shape;
+mod report;
 mod river;
 mod river_record;
 mod season;
@@ -44,6 +45,7 @@ pub use log::{log, logged};
 pub use needed::needed;
 pub use note::note;
 pub use rank::{rank, rank_priced};
+pub use report::report;
 pub use river::river;
 pub use season::season;
 

@@ -146,7 +146,7 @@ pub fn river(context: &Context, answer: &RiverAnswer) -> String {
         points: spoken.map_or_else(Vec::new, |way| points(context, way)),
         release_window: answer.windows.iter().map(|w| window(context, w)).collect(),
         conflicts: super::targets::conflicts(context.site(), answer.conflicts()),
-        observed: super::river_record::observed(context, answer),
+        observed: super::river_record::observed(context, &answer.observed),
         releases: answer.ways.iter().map(|w| way(context, w)).collect(),
         days: answer.days.iter().map(|d| day(context, answer, d)).collect(),
         change_in_time: answer.timely.iter().filter_map(|t| timely(context, t)).collect(),

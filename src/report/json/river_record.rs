@@ -5,7 +5,7 @@ use serde::Serialize;
 use crate::report::text::river::{PROVISIONAL, REVIEWED, unit_si};
 use crate::target::{Held, Tally};
 use crate::tasks::Context;
-use crate::tasks::river::RiverAnswer;
+use crate::tasks::river::Observed;
 
 #[derive(Serialize)]
 pub(super) struct ObservedJson {
@@ -51,10 +51,10 @@ struct DayJson {
 }
 
 /// Every rule with a record at its point; temperature, oxygen and oxygen over saturation each on its own.
-pub(super) fn observed(context: &Context, answer: &RiverAnswer) -> Vec<ObservedJson> {
+pub(super) fn observed(context: &Context, all: &[Observed]) -> Vec<ObservedJson> {
     let site = context.site();
     let mut out = Vec::new();
-    for observed in &answer.observed {
+    for observed in all {
         let Some(rule) = site.targets.get(observed.target) else { continue };
         let r = &observed.record;
         for (of, held) in
