@@ -70,9 +70,9 @@ pub fn scores(context: &Context, past: &Past) -> Vec<String> {
     }
     let unit = system.unit(Dimension::TemperatureDifference);
     let mut out = vec![
-        format!("{:<22}{:>28}    {:>24}", "", format!("temperature, {unit}"), "oxygen, mg/L"),
+        format!("{:<22}{:>28}  {:>24}", "", format!("temperature, {unit}"), "oxygen, mg/L"),
         format!(
-            "{:<22}{:>5}{:>8}{:>7}{:>8}    {:>5}{:>8}{:>7}{:>8}",
+            "{:<22}{:>5}{:>8}{:>7}{:>8}  {:>5}{:>8}{:>7}{:>8}",
             "", "n", "bias", "RMSE", "inside", "n", "bias", "RMSE", "inside"
         ),
     ];
@@ -86,7 +86,7 @@ pub fn scores(context: &Context, past: &Past) -> Vec<String> {
             let inside = score.share_inside().map_or("-".into(), |share| format!("{:.0}%", 100.0 * share));
             format!("{n:>5}{:>8}{:>7}{inside:>8}", said(misfit.bias), said(misfit.rmse))
         };
-        out.push(format!("{name:<22}{}    {}", half(warmth, true), half(breath, false)));
+        out.push(format!("{name:<22}{}  {}", half(warmth, true), half(breath, false)));
     };
     row("All days".into(), Some(&past.temperature.all), Some(&past.oxygen.all));
     if let Some((warmth, breath)) = &past.with_applied {
