@@ -16,6 +16,8 @@ mod docs;
 mod found;
 #[path = "bad_input/laws.rs"]
 mod laws;
+#[path = "bad_input/learned.rs"]
+mod learned;
 #[path = "bad_input/limits.rs"]
 mod limits;
 #[path = "bad_input/mutated.rs"]

@@ -22,6 +22,8 @@ mod levelling;
 mod mix;
 #[path = "laws/order/mod.rs"]
 mod order;
+#[path = "laws/pages/mod.rs"]
+mod pages;
 #[path = "laws/rank/mod.rs"]
 mod rank;
 #[path = "laws/river/mod.rs"]

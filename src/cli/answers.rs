@@ -163,6 +163,17 @@ pub(super) fn answer(cli: &Cli, clock: DateTime<Utc>, progress: Progress) -> Res
             };
             (shown, End::Answered)
         }
+        Some(Command::Note { common, setting, asked, piece }) => {
+            let context = tasks::open(&common.asked(), clock)?;
+            let answer = tasks::note::note(&context, &asked.asked(setting), &|done| progress.tell(done))?;
+            drop(progress);
+            let shown = if common.json {
+                json::note(&context, &answer)
+            } else {
+                piece.written(&report::note::page(&context, &answer))?
+            };
+            (shown, End::Answered)
+        }
         Some(Command::Check { site, json }) => {
             let (problems, system) = tasks::check(site);
             let shown = if *json { json::check(&problems) } else { text::check(site, &problems, system) };

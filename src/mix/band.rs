@@ -60,8 +60,9 @@ pub struct Member {
 /// Draws the members: fixed seed, so the same inputs give the same band.
 pub fn members(inputs: &BandInputs) -> Vec<Member> {
     let mut random = Pcg64Mcg::seed_from_u64(inputs.seed);
-    let low = Uniform::new_inclusive(inputs.zone_low, 1.0);
-    let high = Uniform::new_inclusive(1.0, inputs.zone_high);
+    let middle = inputs.zone_middle;
+    let low = Uniform::new_inclusive(inputs.zone_low, middle);
+    let high = Uniform::new_inclusive(middle, inputs.zone_high);
     let unit = Uniform::new_inclusive(0.0, 1.0);
     (0..inputs.members)
         .map(|i| {
@@ -73,8 +74,8 @@ pub fn members(inputs: &BandInputs) -> Vec<Member> {
             let mut between = |range: &Result<Uniform<f64>, _>, fallback: f64| {
                 range.as_ref().map_or(fallback, |range: &Uniform<f64>| range.sample(&mut random))
             };
-            // half of the members thinner than published, half thicker
-            let zone_factor = if i % 2 == 0 { between(&low, 1.0) } else { between(&high, 1.0) };
+            // half of the members thinner than the middle, half thicker
+            let zone_factor = if i % 2 == 0 { between(&low, middle) } else { between(&high, middle) };
             let (leak, joined) = (between(&unit, 0.5), between(&unit, 0.5));
             let crest = match i / 2 % 4 {
                 1 => CrestForm::Control,
@@ -99,9 +100,27 @@ pub fn members(inputs: &BandInputs) -> Vec<Member> {
         .collect()
 }
 
+/// A member with the column it makes, and what the same draws make of it with nothing learned.
+struct Case {
+    member: Member,
+    plain: Member,
+    column: Column,
+}
+
+/// What a setting gives with nothing learned, its flows the same.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Plain {
+    /// The release.
+    pub release: Blend,
+    /// The perturbed cases.
+    pub spread: Spread,
+}
+
 /// The members with the columns they make of a profile; prepared once, used for every mix.
 pub struct Perturbed {
-    cases: Vec<(Member, Column)>,
+    cases: Vec<Case>,
+    /// The site with nothing learned, where something is.
+    plain: Option<Site>,
     /// 2 where the profile holds a large inversion, else 1.
     widening: f64,
 }
@@ -125,9 +144,9 @@ impl Perturbed {
         // without oxygen, so that where that was read does not move the layers
         let water = Profile::column_of(site, profile.pool_m, &profile.samples, &[]);
         let knee = knee_m(water.as_ref().unwrap_or(&profile.column));
-        let cases = members(&site.band)
-            .into_iter()
-            .filter_map(|m| {
+        let drawn = members(&site.spreading()).into_iter().zip(members(&site.band));
+        let cases = drawn
+            .filter_map(|(m, plain)| {
                 let lift = heaved(profile, knee, m.heave * sd);
                 let samples: Vec<Sample> = profile
                     .samples
@@ -146,25 +165,49 @@ impl Perturbed {
                         oxygen_mg_l: (o.oxygen_mg_l + m.cast_mg_l).max(0.0),
                     })
                     .collect();
-                Some((m, Profile::column_of(site, profile.pool_m, &samples, &oxygen)?))
+                let column = Profile::column_of(site, profile.pool_m, &samples, &oxygen)?;
+                Some(Case { member: m, plain, column })
             })
             .collect();
-        Self { cases, widening: if profile.large_inversion { 2.0 } else { 1.0 } }
+        let widening = if profile.large_inversion { 2.0 } else { 1.0 };
+        Self { cases, plain: site.without_learned(), widening }
     }
 
     /// The column of every member, in the order of the members.
     pub fn columns(&self) -> impl Iterator<Item = &Column> {
-        self.cases.iter().map(|case| &case.1)
+        self.cases.iter().map(|case| &case.column)
     }
 
     /// The release of a setting in every member; `centre` is the unperturbed release, about which the spread
     /// widens where the profile is doubtful.
     pub fn spread(&self, site: &Site, groups: &[Vec<usize>], setting: &Setting, centre: &Blend) -> Spread {
+        self.spread_of(site, groups, setting, centre, |case| &case.member)
+    }
+
+    /// What a setting gives with nothing learned; `None` where nothing is, or nothing flows.
+    pub fn plain(&self, column: &Column, groups: &[Vec<usize>], setting: &Setting) -> Option<Plain> {
+        let site = self.plain.as_ref()?;
+        let levels = levels(site, groups, setting, column.surface_m(), 0.5, CrestForm::Overflow);
+        let drawn = draw_levels(column, &levels, 1.0);
+        let release = release(&drawn)?.aerated(site, &drawn, 0.5);
+        let spread = self.spread_of(site, groups, setting, &release, |case| &case.plain);
+        Some(Plain { release, spread })
+    }
+
+    fn spread_of(
+        &self,
+        site: &Site,
+        groups: &[Vec<usize>],
+        setting: &Setting,
+        centre: &Blend,
+        member: fn(&Case) -> &Member,
+    ) -> Spread {
         let widen = |value: f64, middle: f64| middle + self.widening * (value - middle);
         let cases = self
             .cases
             .iter()
-            .filter_map(|(m, column)| {
+            .filter_map(|case| {
+                let (m, column) = (member(case), &case.column);
                 let setting = &at_loss(setting, m.loss);
                 let mut levels = levels(site, groups, setting, column.surface_m(), m.leak, m.crest);
                 for level in &mut levels {
@@ -181,7 +224,10 @@ impl Perturbed {
                     let drawn_as_one = || gain::joined(column, &drawn, &overlaps, m.zone_factor);
                     match one {
                         // the water of each conduit is needed only where some conduit changes it
-                        Some(one) if site.aerates() => drawn_as_one().map_or(one, |drawn| aired(one, &drawn)),
+                        Some(one) if gain::gains(site) => {
+                            drawn_as_one().map_or(one, |drawn| aired(one, &drawn))
+                        }
+                        Some(one) if site.learned().is_some() => aired(one, &drawn),
                         Some(one) => one,
                         None => apart,
                     }

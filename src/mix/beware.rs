@@ -84,17 +84,23 @@ pub(super) fn zones(site: &Site, column: &Column, drawn: &[Drawn], warnings: &mu
     }
 }
 
-pub(super) fn overlaps(column: &Column, drawn: &[Drawn], release: &Blend, warnings: &mut Vec<Problem>) {
+pub(super) fn overlaps(
+    site: &Site,
+    column: &Column,
+    drawn: &[Drawn],
+    release: &Blend,
+    warnings: &mut Vec<Problem>,
+) {
     let groups = overlapping(drawn);
     if groups.is_empty() {
         return;
     }
-    if let Some(joined) = release_joined(column, drawn, &groups, 1.0) {
+    if let Some(joined) = release_joined(column, drawn, &groups, site.zone_factor()) {
         warnings.push(Problem::flag(
             "zones-overlap",
             format!(
                 "open levels draw from each other's zones; taken as one sink they would change the release by {}, which the band includes",
-                say::dc(joined.temperature_c - release.temperature_c, 1).signed()
+                say::dc(joined.temperature_c - (release.temperature_c - release.bias_c), 1).signed()
             ),
             "",
         ));

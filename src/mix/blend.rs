@@ -24,11 +24,14 @@ pub struct Drawn {
 pub struct Blend {
     /// Flow, m3/s.
     pub flow_m3s: f64,
-    /// Temperature, C.
+    /// Temperature, C, with the bias that was learned.
     pub temperature_c: f64,
+    /// That bias, C; 0 for water that leaves as it is.
+    pub bias_c: f64,
     /// Oxygen leaving the pool, mg/L; `None` when any level's is missing.
     pub oxygen_mg_l: Option<f64>,
-    /// Oxygen below the dam, mg/L: after what the conduits add; without a gain at the site that leaving the pool.
+    /// Oxygen below the dam, mg/L: after what the conduits add and what was learned; without either that leaving the
+    /// pool.
     pub oxygen_below_mg_l: Option<f64>,
     /// Dissolved solids, g/kg.
     pub salt_g_per_kg: f64,
@@ -41,7 +44,7 @@ pub struct Blend {
 impl Blend {
     /// Dissolved and suspended solids, mg/L; the salt as [`water::dissolved_g_per_kg`] took it.
     pub fn solids_mg_l(&self) -> f64 {
-        self.salt_g_per_kg * water::pure_water_kg_m3(self.temperature_c) + self.suspended_mg_l
+        self.salt_g_per_kg * water::pure_water_kg_m3(self.temperature_c - self.bias_c) + self.suspended_mg_l
     }
 }
 
@@ -69,6 +72,7 @@ pub fn blend(streams: &[(f64, Draw)]) -> Option<Blend> {
     Some(Blend {
         flow_m3s,
         temperature_c: mean(&|d| d.temperature_c),
+        bias_c: 0.0,
         oxygen_mg_l,
         oxygen_below_mg_l: oxygen_mg_l,
         salt_g_per_kg: mean(&|d| d.salt_g_per_kg),
@@ -77,7 +81,7 @@ pub fn blend(streams: &[(f64, Draw)]) -> Option<Blend> {
     })
 }
 
-/// The release of drawn levels, its oxygen below the dam as leaving the pool ([`Blend::aerated`] adds the gain).
+/// The release of drawn levels as it leaves the pool ([`Blend::aerated`] makes of it what comes below the dam).
 pub fn release(drawn: &[Drawn]) -> Option<Blend> {
     let streams: Vec<(f64, Draw)> =
         drawn.iter().filter_map(|d| Some((d.level.sink.flow_m3s, d.draw?))).collect();

@@ -10,7 +10,7 @@ use crate::site::{Outlet, Site};
 use crate::units::{Dimension, say};
 use crate::withdrawal::CrestForm;
 
-use super::band::{Perturbed, Spread};
+use super::band::{Perturbed, Plain, Spread};
 use super::beware;
 use super::blend::{Blend, Drawn, draw_levels, release};
 use super::conflict::Conflict;
@@ -31,6 +31,8 @@ pub struct Mix {
     pub release: Blend,
     /// The perturbed cases.
     pub spread: Spread,
+    /// The same with nothing learned, where something is.
+    pub plain: Option<Plain>,
     /// Standing against every target valid on the date.
     pub targets: Vec<TargetStanding>,
     /// Hard targets that leave nothing in common.
@@ -121,16 +123,20 @@ pub fn judge(
     let day: Day = day.into();
     let column = &profile.column;
     let groups = groups(site);
-    let drawn =
-        draw_levels(column, &levels(site, &groups, setting, profile.pool_m, 0.5, CrestForm::Overflow), 1.0);
+    let drawn = draw_levels(
+        column,
+        &levels(site, &groups, setting, profile.pool_m, 0.5, CrestForm::Overflow),
+        site.zone_factor(),
+    );
     let release = release(&drawn)?.aerated(site, &drawn, 0.5);
     let spread = perturbed.spread(site, &groups, setting, &release);
+    let plain = perturbed.plain(column, &groups, setting);
     let Held { targets, conflicts, points, flags } = held(site, &[(1.0, &release, &spread)], &day);
     let limits = checks(site, column, setting, profile.pool_m, day.date, &drawn, &release);
     let mut warnings: Vec<Problem> = broken(site, &limits).collect();
     warnings.extend(conflicts.iter().map(|conflict| conflict.problem(site)));
     beware::zones(site, column, &drawn, &mut warnings);
-    beware::overlaps(column, &drawn, &release, &mut warnings);
+    beware::overlaps(site, column, &drawn, &release, &mut warnings);
     beware::oxygen(site, &drawn, &release, &spread, &mut warnings);
     beware::gain(site, &drawn, &release, &mut warnings);
     beware::half_dry(site, setting, profile.pool_m, &mut warnings);
@@ -140,7 +146,18 @@ pub fn judge(
     beware::cautions(site, column, &drawn, &mut warnings);
     warnings.extend(flags);
     let not_checked = limits::not_checked(site, column, setting, &drawn, &limits);
-    Some(Mix { levels: drawn, release, spread, targets, conflicts, points, limits, not_checked, warnings })
+    Some(Mix {
+        levels: drawn,
+        release,
+        spread,
+        plain,
+        targets,
+        conflicts,
+        points,
+        limits,
+        not_checked,
+        warnings,
+    })
 }
 
 /// Every limit that applies to a setting under a pool (m) on a date, by the names of outlets and wells; `drawn` and

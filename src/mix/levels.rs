@@ -5,16 +5,11 @@
 use std::f64::consts::PI;
 
 use crate::intake;
-use crate::site::{Kind, Outlet, Site};
+use crate::site::{Kind, Outlet, Site, level_groups};
 use crate::water::G_M_S2;
 use crate::withdrawal::{CrestForm, Opening, Sink};
 
 use super::wells::WellState;
-
-/// Crests this near in elevation draw as one, m (choice).
-const SAME_CREST_M: f64 = 0.1;
-/// Angles this near are equal, rad.
-const SAME_ANGLE: f64 = 1e-6;
 
 /// One gate of a setting.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -72,48 +67,9 @@ pub struct Level {
     pub height_m: f64,
 }
 
-/// Groups of linked outlets, from the lowest up: equal angle, and fully open centre-lines no more than half
-/// the smaller full height apart; crests at one elevation. Fixed for a site, whatever is open.
+/// Groups of linked outlets, from the lowest up, whatever is open: [`level_groups`].
 pub fn groups(site: &Site) -> Vec<Vec<usize>> {
-    let mut order: Vec<usize> = (0..site.outlets.len()).collect();
-    order.sort_by(|&a, &b| by_place(&site.outlets[a], &site.outlets[b]));
-    let mut groups: Vec<Vec<usize>> = Vec::new();
-    for index in order {
-        let links =
-            |group: &Vec<usize>| group.iter().any(|&g| linked(&site.outlets[g], &site.outlets[index]));
-        let mut joined: Vec<usize> = Vec::new();
-        // an outlet can link two groups; they then become one
-        groups.retain_mut(|group| {
-            let link = links(group);
-            if link {
-                joined.append(group);
-            }
-            !link
-        });
-        joined.push(index);
-        joined.sort_by(|&a, &b| by_place(&site.outlets[a], &site.outlets[b]));
-        groups.push(joined);
-    }
-    groups.sort_by(|a, b| match (a.first(), b.first()) {
-        (Some(&a), Some(&b)) => by_place(&site.outlets[a], &site.outlets[b]),
-        _ => std::cmp::Ordering::Equal,
-    });
-    groups
-}
-
-fn by_place(a: &Outlet, b: &Outlet) -> std::cmp::Ordering {
-    a.centre_m.total_cmp(&b.centre_m).then_with(|| a.name.cmp(&b.name))
-}
-
-fn linked(a: &Outlet, b: &Outlet) -> bool {
-    let apart = (a.centre_m - b.centre_m).abs();
-    match (a.is_crest(), b.is_crest()) {
-        (true, true) => apart <= SAME_CREST_M,
-        (false, false) => {
-            (a.angle_rad - b.angle_rad).abs() < SAME_ANGLE && apart <= 0.5 * a.height_m().min(b.height_m())
-        }
-        _ => false,
-    }
+    level_groups(&site.outlets)
 }
 
 /// Levels of a setting under a pool, from the lowest up, leaks included. `leak_place` as in

@@ -16,11 +16,12 @@ pub mod split;
 mod standing;
 mod wells;
 
-pub use band::{GREATEST_LOSS, LEAST_LOSS, Member, Perturbed, Spread, members, quantile};
+pub use band::{GREATEST_LOSS, LEAST_LOSS, Member, Perturbed, Plain, Spread, members, quantile};
 pub use beware::LOW_OXYGEN_SHARE;
 pub use blend::{Blend, Drawn, blend, draw_levels, overlapping, release, release_joined};
 pub use conflict::{Conflict, conflicts};
 pub use day::{Day, RuleToday, reference_days};
+pub use gain::learned_mg_l;
 pub use judge::{Mix, checks, judge, refusals};
 pub use levels::{Gate, Level, Seat, Setting, as_one, groups, levels, seat};
 pub use links::Links;

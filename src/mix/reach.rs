@@ -60,5 +60,5 @@ pub fn reach_m(site: &Site, column: &Column, outlet: usize, flow_m3s: f64) -> Op
             Kind::Orifice(_) => Opening::Port { angle_rad: o.angle_rad },
         },
     };
-    Some(zone(column, &sink, 1.0).map_or(sink.centre_m, |z| z.lower.limit_m))
+    Some(zone(column, &sink, site.zone_factor()).map_or(sink.centre_m, |z| z.lower.limit_m))
 }

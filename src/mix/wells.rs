@@ -267,7 +267,8 @@ fn share_out(
     let gates = &wells[w].gates;
     let besides: Vec<f64> = gates.iter().map(|g| beside(g.group, g.outlet)).collect();
     let ports: Vec<Port> = gates.iter().map(|g| g.port).collect();
-    let supply = |k: usize, flow: f64| entering(column, seats[gates[k].group], besides[k] + flow);
+    let supply =
+        |k: usize, flow: f64| entering(column, seats[gates[k].group], besides[k] + flow, site.zone_factor());
     let (well, total_m3s) = (wells[w].state.well, wells[w].state.flow_m3s);
     let shaft =
         Shaft { column, conduit_m: site.wells[well].conduit_m, solids_kg_m3: site.water.solids_kg_m3 };
@@ -286,14 +287,14 @@ fn share_out(
 }
 
 /// Water a level takes in at a flow; at none, the water before it.
-fn entering(column: &Column, seat: Option<Seat>, flow_m3s: f64) -> Entering {
+fn entering(column: &Column, seat: Option<Seat>, flow_m3s: f64, zone_factor: f64) -> Entering {
     let Some(seat) = seat else {
         return still(column, column.surface_m());
     };
     // the zone over an edge reaches up to the surface however little passes, so the water before it begins there
     let least_m3s = if matches!(seat.opening, Opening::Crest { .. }) { LEAST_FLOW_M3S } else { 0.0 };
     let sink = Sink { centre_m: seat.centre_m, flow_m3s: flow_m3s.max(least_m3s), opening: seat.opening };
-    match zone(column, &sink, 1.0).and_then(|z| z.draw(column)) {
+    match zone(column, &sink, zone_factor).and_then(|z| z.draw(column)) {
         Some(draw) => Entering {
             temperature_c: draw.temperature_c,
             salt_g_per_kg: draw.salt_g_per_kg,

@@ -192,9 +192,9 @@ impl<'a> Works<'a> {
             Opening::Crest { length_m, .. } => (true, length_m),
         };
         let at = (sink.centre_m.to_bits(), is_crest, size.to_bits(), sink.flow_m3s.to_bits());
-        let column = self.column;
+        let (column, factor) = (self.column, self.site.zone_factor());
         let (zone, draw) = *self.draws.entry(at).or_insert_with(|| {
-            let zone = zone(column, &sink, 1.0);
+            let zone = zone(column, &sink, factor);
             (zone, zone.and_then(|z| z.draw(column)))
         });
         Drawn { level, zone, draw }
@@ -208,6 +208,7 @@ const SAME: f64 = 1e-9;
 const DRY: Blend = Blend {
     flow_m3s: 0.0,
     temperature_c: 0.0,
+    bias_c: 0.0,
     oxygen_mg_l: None,
     oxygen_below_mg_l: None,
     salt_g_per_kg: 0.0,

@@ -170,7 +170,10 @@ impl Levels<'_> {
 
     /// Adds the water of one curve at the flow of each block. Tells whether its oxygen is unknown in any.
     pub(super) fn add(&self, curve: Option<usize>, flows: &[f64; MOST_BLOCKS], lanes: &mut [f64]) -> bool {
-        let Some(curve) = curve.and_then(|c| self.curves.get(c)) else { return false };
+        let Some((curve, bias_c)) = curve.and_then(|c| Some((self.curves.get(c)?, self.curves.bias_c(c))))
+        else {
+            return false;
+        };
         let mut unknown = false;
         for block in 0..self.lanes.blocks {
             let flow = flows[block];
@@ -179,7 +182,7 @@ impl Levels<'_> {
             }
             let water = curve.at(flow);
             lanes[3 * block] += flow;
-            lanes[3 * block + 1] += flow * water.temperature_c;
+            lanes[3 * block + 1] += flow * (water.temperature_c + bias_c);
             lanes[3 * block + 2] += flow * water.oxygen_mg_l.unwrap_or(0.0);
             unknown |= water.oxygen_mg_l.is_none();
             lanes[self.lanes.cold()] += self.weights[block] * flow * water.cold_share;

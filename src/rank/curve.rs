@@ -86,22 +86,22 @@ pub struct Curve {
 }
 
 impl Curve {
-    /// Solves a level at the flows it needs, up to `most_m3s`. `cold_c` is the threshold of cold water. `None` for a level out of the water.
+    /// Solves a level in a pool, with a factor on its zone, at the flows it needs, up to `most_m3s`. `cold_c` is the threshold of cold water. `None` for a level out of the water.
     ///
     /// Flows at which the zone meets bed or surface are knots, since the release bends there.
     pub fn new(
-        column: &Column,
+        (column, zone_factor): (&Column, f64),
         centre_m: f64,
         opening: Opening,
         most_m3s: f64,
         cold_c: Option<f64>,
     ) -> Option<Self> {
-        Self::cut(column, (centre_m, opening), most_m3s, cold_c, &Cut::FINE)
+        Self::cut((column, zone_factor), (centre_m, opening), most_m3s, cold_c, &Cut::FINE)
     }
 
     /// The same cut as finely as is asked.
     fn cut(
-        column: &Column,
+        (column, zone_factor): (&Column, f64),
         (centre_m, opening): (f64, Opening),
         most_m3s: f64,
         cold_c: Option<f64>,
@@ -109,7 +109,7 @@ impl Curve {
     ) -> Option<Self> {
         let solve = |root: f64| {
             let sink = Sink { centre_m, flow_m3s: root * root, opening };
-            let zone = zone(column, &sink, 1.0)?;
+            let zone = zone(column, &sink, zone_factor)?;
             let draw = zone.draw(column)?;
             let values = [
                 draw.temperature_c,
@@ -224,37 +224,46 @@ fn refine(
 /// Curves of a pool, each sink solved once however many gates share it.
 #[derive(Debug, Default)]
 pub struct Curves {
-    places: BTreeMap<[u64; 3], usize>,
+    places: BTreeMap<[u64; 4], usize>,
     solved: Vec<Option<Curve>>,
     sinks: Vec<(f64, Opening)>,
+    bias_c: Vec<f64>,
 }
 
 impl Curves {
-    /// Asks for the curve of a sink; its index among the curves.
-    pub fn ask(&mut self, centre_m: f64, opening: Opening) -> usize {
+    /// Asks for the curve of a sink whose water comes out with a bias that was learned (C); its index among the curves.
+    pub fn ask(&mut self, centre_m: f64, opening: Opening, bias_c: f64) -> usize {
         let (kind, size) = match opening {
             Opening::Port { angle_rad } => (0, angle_rad),
             Opening::Crest { length_m, .. } => (1, length_m),
         };
         let next = self.sinks.len();
-        let index = *self.places.entry([kind, size.to_bits(), centre_m.to_bits()]).or_insert(next);
+        let index =
+            *self.places.entry([kind, size.to_bits(), centre_m.to_bits(), bias_c.to_bits()]).or_insert(next);
         if index == next {
             self.sinks.push((centre_m, opening));
+            self.bias_c.push(bias_c);
         }
         index
     }
 
-    /// Solves what was asked for, on all cores.
-    pub(super) fn solve(&mut self, column: &Column, most_m3s: f64, cold_c: Option<f64>, cut: &Cut) {
+    /// Solves what was asked for in a pool, with a factor on every zone, on all cores.
+    pub(super) fn solve(&mut self, water: (&Column, f64), most_m3s: f64, cold_c: Option<f64>, cut: &Cut) {
         use rayon::prelude::*;
         self.solved =
-            self.sinks.par_iter().map(|&sink| Curve::cut(column, sink, most_m3s, cold_c, cut)).collect();
+            self.sinks.par_iter().map(|&sink| Curve::cut(water, sink, most_m3s, cold_c, cut)).collect();
     }
 
     /// A solved curve; `None` for a sink out of the water.
     #[inline]
     pub fn get(&self, index: usize) -> Option<&Curve> {
         self.solved.get(index)?.as_ref()
+    }
+
+    /// Bias that was learned of a curve's level, C.
+    #[inline]
+    pub fn bias_c(&self, index: usize) -> f64 {
+        self.bias_c.get(index).copied().unwrap_or(0.0)
     }
 
     /// Where a curve draws.

@@ -3,6 +3,7 @@
 //!
 //! Methods: `docs/methods.md`, sections 5 and 10.
 
+use crate::mix::learned_mg_l;
 use crate::site::Site;
 use crate::water::Aeration;
 
@@ -16,7 +17,9 @@ type Sums = [f64; 4];
 pub(super) struct Conduit {
     /// First outlet of its unit: each unit has one that no other has.
     unit: usize,
-    aeration: Aeration,
+    aeration: Option<Aeration>,
+    /// Gain that was learned, mg/L.
+    learned: Option<f64>,
     alone: [Sums; MOST_BLOCKS],
 }
 
@@ -24,8 +27,12 @@ impl Conduit {
     /// The conduit of some outlets, before any water; `None` where it adds nothing.
     pub(super) fn of(site: &Site, outlets: &[usize]) -> Option<Self> {
         let unit = *outlets.first()?;
-        let aeration = site.aeration(unit)?.at(0.5);
-        Some(Self { unit, aeration, alone: [[0.0; 4]; MOST_BLOCKS] })
+        let aeration = site.aeration(unit).map(|aeration| aeration.at(0.5));
+        let learned = site.learned_gain_mg_l();
+        if aeration.is_none() && learned.is_none() {
+            return None;
+        }
+        Some(Self { unit, aeration, learned, alone: [[0.0; 4]; MOST_BLOCKS] })
     }
 
     /// Adds the water of one curve at the flow of each block.
@@ -47,7 +54,10 @@ impl Conduit {
         }
         let (temperature_c, oxygen_mg_l) = (heat / flow, oxygen / flow);
         let saturation = site.saturation_below_mg_l(temperature_c, salt / flow);
-        flow * (self.aeration.below_mg_l(oxygen_mg_l, saturation, temperature_c) - oxygen_mg_l)
+        let aerated =
+            self.aeration.map_or(oxygen_mg_l, |a| a.below_mg_l(oxygen_mg_l, saturation, temperature_c));
+        let below = self.learned.map_or(aerated, |gain_mg_l| learned_mg_l(aerated, gain_mg_l, saturation));
+        flow * (below - oxygen_mg_l)
     }
 }
 

@@ -122,7 +122,7 @@ fn ranked(question: &Question, cut: &Cut, lots: usize, progress: Progress) -> Re
     let direct = site.outlets.iter().filter(|o| o.well.is_none());
     let leaks: f64 = direct.map(|o| intake::leak_m3s(o, profile.pool_m - o.centre_m, 0.5)).sum();
     let most_m3s = question.blocks.iter().map(|b| b.1).fold(spilt, f64::max) + leaks;
-    curves.solve(&profile.column, most_m3s, site.cold_water_c.first().copied(), cut);
+    curves.solve((&profile.column, site.zone_factor()), most_m3s, site.cold_water_c.first().copied(), cut);
     let slots = slots(question, &seats, &curves, most_m3s);
     let weights: Vec<f64> = question.blocks.iter().map(|b| b.0).collect();
     let lanes = Lanes {
@@ -261,7 +261,7 @@ fn slots(question: &Question, seats: &[Level], curves: &Curves, most_m3s: f64) -
 fn kept_m3s(question: &Question, layer: usize, (centre_m, opening): (f64, Opening), most_m3s: f64) -> f64 {
     let column = &question.profile.column;
     let draws = |flow_m3s: f64| {
-        zone(column, &Sink { centre_m, flow_m3s, opening }, 1.0).is_some_and(|zone| {
+        zone(column, &Sink { centre_m, flow_m3s, opening }, question.site.zone_factor()).is_some_and(|zone| {
             let mut checks = Vec::new();
             limits::level(question.site, column, &zone, Of::Whole, &mut checks);
             checks.iter().any(|c| c.item == layer && c.broken())

@@ -189,7 +189,8 @@ impl Decoder<'_> {
             let Some((centre_m, opening)) = curve.and_then(|c| self.levels.curves.sink(c)) else { continue };
             for block in 0..self.levels.lanes.blocks {
                 let flow_m3s = same().map(|p| p.flows_m3s[block]).sum();
-                if let Some(zone) = zone(&profile.column, &Sink { centre_m, flow_m3s, opening }, 1.0)
+                if let Some(zone) =
+                    zone(&profile.column, &Sink { centre_m, flow_m3s, opening }, site.zone_factor())
                     && same().any(|p| p.set)
                 {
                     limits::level(site, &profile.column, &zone, check.of, &mut checks);

@@ -103,6 +103,7 @@ pub(super) fn levels(
                 ));
             };
             let drawing = units.iter().filter(|u| u.outlets.iter().any(|o| outlets.contains(o))).count();
+            let bias_c = outlets.first().and_then(|&o| site.bias_c(o)).unwrap_or(0.0);
             let slot = (drawing > 1).then(|| {
                 slots += 1;
                 slots - 1
@@ -124,7 +125,7 @@ pub(super) fn levels(
                         leaks && intake::is_wet(o, if opening > 0.0 { opening } else { 1.0 }, pool_m)
                     });
                     let seat = real.then(|| seat(site, &members, 0.5, CrestForm::default())).flatten()?;
-                    Some(curves.ask(seat.centre_m, seat.opening))
+                    Some(curves.ask(seat.centre_m, seat.opening, bias_c))
                 })
                 .collect();
             Ok(level)

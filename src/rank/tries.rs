@@ -284,7 +284,7 @@ impl Kitchen<'_> {
         let column = &self.question.profile.column;
         let mut checks = Vec::new();
         for &flow_m3s in &flows[..self.levels.lanes.blocks] {
-            if let Some(zone) = zone(column, &Sink { centre_m, flow_m3s, opening }, 1.0) {
+            if let Some(zone) = zone(column, &Sink { centre_m, flow_m3s, opening }, site.zone_factor()) {
                 limits::level(site, column, &zone, Of::Outlet(outlet), &mut checks);
             }
         }
@@ -343,7 +343,10 @@ pub(super) fn alone(site: &Site, units: &[Unit], curves: &mut Curves) -> Vec<Vec
                 continue;
             }
             if let Some(seat) = seat(site, &[(outlet, opening)], 0.5, CrestForm::default()) {
-                out[outlet].push((opening, curves.ask(seat.centre_m, seat.opening)));
+                out[outlet].push((
+                    opening,
+                    curves.ask(seat.centre_m, seat.opening, site.bias_c(outlet).unwrap_or(0.0)),
+                ));
             }
         }
     }

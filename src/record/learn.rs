@@ -13,7 +13,7 @@ mod sides;
 
 use chrono::{Days, NaiveDate};
 
-use crate::site::Site;
+use crate::site::{Learned, Site};
 
 use super::pairs::Pair;
 
@@ -28,9 +28,6 @@ use sides::Sides;
 pub const LEAST_DAYS: usize = 8;
 /// Fewest stretches of days, each with casts of its own (choice): fewer do not show how errors scatter.
 pub const LEAST_STRETCHES: usize = 4;
-/// Days that learning looks back (choice): two seasons, after which gates and gauges have been worked on.
-pub const WINDOW_DAYS: u64 = 730;
-
 /// What can be learned.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub enum Effect {
@@ -93,27 +90,6 @@ pub struct Candidate {
     pub verdict: Verdict,
 }
 
-/// What is kept of what was learned; nothing by default.
-#[derive(Debug, Clone, Default, PartialEq)]
-pub struct Learned {
-    /// Constant bias, measured less computed, C.
-    pub bias_c: Option<f64>,
-    /// Bias by level, by its place among the levels of the site from the lowest, C.
-    pub by_level_c: Vec<(usize, f64)>,
-    /// Zone factor.
-    pub zone_factor: Option<f64>,
-    /// Oxygen gained on the way to the gauge, mg/L.
-    pub oxygen_gain_mg_l: Option<f64>,
-    /// First and last day of the window.
-    pub window: Option<(NaiveDate, NaiveDate)>,
-    /// Pairs in it.
-    pub n: usize,
-    /// What the method misses once this is applied, standard deviation, C: stands for that of the band.
-    pub release_c: Option<f64>,
-    /// The same of the oxygen, mg/L.
-    pub release_mg_l: Option<f64>,
-}
-
 /// Everything that learning has to say.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Learning {
@@ -144,12 +120,12 @@ pub fn learn(site: &Site, pairs: &[Pair], window_days: u64) -> Learning {
     let effects = [Effect::Bias, Effect::ZoneFactor, Effect::ByLevel];
     let mut tried = effects.map(|effect| warmth.tried(effect));
     let alike = choose(&mut tried);
-    learned.keep(&tried);
+    keep(&mut learned, &tried);
     learned.release_c = left(&tried).and_then(|errors| warmth.missed(&errors, site.band.release_c));
     let breath = Sides::oxygen(&pairs, learned.zone_factor.unwrap_or(1.0));
     let mut gain = [breath.tried(Effect::OxygenGain)];
     choose(&mut gain);
-    learned.keep(&gain);
+    keep(&mut learned, &gain);
     learned.release_mg_l = left(&gain).and_then(|errors| breath.missed(&errors, site.band.release_mg_l));
     let candidates = tried.into_iter().chain(gain).map(|tried| tried.candidate).collect();
     Learning { learned, candidates, alike, suspect: sensor::suspect(site, &pairs) }
@@ -172,27 +148,21 @@ fn left(tried: &[Tried]) -> Option<Vec<f64>> {
     Some(kept.map_or_else(|| first.days.iter().map(Seen::plain_error).collect(), |fit| fit.held_out.clone()))
 }
 
-impl Learned {
-    /// Takes over what is kept.
-    fn keep(&mut self, tried: &[Tried]) {
-        for Candidate { effect, figures, .. } in
-            tried.iter().map(|t| &t.candidate).filter(|c| c.verdict == Verdict::Kept)
-        {
-            let value = figures.first().map(|figure| figure.value);
-            match effect {
-                Effect::Bias => self.bias_c = value,
-                Effect::ZoneFactor => self.zone_factor = value,
-                Effect::OxygenGain => self.oxygen_gain_mg_l = value,
-                Effect::ByLevel => {
-                    self.by_level_c = figures.iter().filter_map(|f| Some((f.level?, f.value))).collect();
-                }
+/// Takes over what is kept.
+fn keep(learned: &mut Learned, tried: &[Tried]) {
+    let kept = tried.iter().map(|t| &t.candidate).filter(|c| c.verdict == Verdict::Kept);
+    for Candidate { effect, figures, .. } in kept {
+        let value = figures.first().map(|figure| figure.value);
+        match effect {
+            Effect::Bias => learned.bias_c = value,
+            Effect::ZoneFactor => {
+                learned.zone_factor = value;
+                learned.zone_range = figures.first().and_then(|figure| figure.interval);
+            }
+            Effect::OxygenGain => learned.oxygen_gain_mg_l = value,
+            Effect::ByLevel => {
+                learned.by_level_c = figures.iter().filter_map(|f| Some((f.level?, f.value))).collect();
             }
         }
-    }
-
-    /// What is added to the temperature of a release, C, by the share of each level.
-    pub fn shift_c(&self, shares: &[(usize, f64)]) -> f64 {
-        let of = |level: usize| self.by_level_c.iter().find(|l| l.0 == level).map_or(0.0, |l| l.1);
-        self.bias_c.unwrap_or(0.0) + shares.iter().map(|(level, share)| share * of(*level)).sum::<f64>()
     }
 }

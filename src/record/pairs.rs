@@ -15,9 +15,7 @@ use crate::mix::{Perturbed, Setting, groups};
 use crate::profile::Profile;
 use crate::rank::Progress;
 use crate::series::{Daily, Days};
-use crate::site::Site;
-
-use super::learn::Learned;
+use crate::site::{Learned, Site};
 
 pub use curve::{Curve, ZONE_FACTORS};
 
@@ -126,8 +124,20 @@ pub struct Paired {
     pub beside: Vec<Pair>,
 }
 
-/// Holds every day against the gauge. `None` where `progress` stopped it.
+impl Paired {
+    /// Drops what is of other dates.
+    pub fn keep(&mut self, is_wanted: &dyn Fn(NaiveDate) -> bool) {
+        self.pairs.retain(|pair| is_wanted(pair.date));
+        self.left_out.retain(|left| is_wanted(left.date));
+        self.beside.retain(|pair| is_wanted(pair.date));
+    }
+}
+
+/// Holds every day against the gauge, as computed with nothing learned. `None` where `progress` stopped it.
 pub fn pairs(site: &Site, days: &[Day], gauge: &Daily, progress: Progress) -> Option<Paired> {
+    // so that nothing is learned on top of what was
+    let plain = site.without_learned();
+    let site = plain.as_ref().unwrap_or(site);
     let groups = groups(site);
     let done = AtomicUsize::new(0);
     let one = |day: &Day| {

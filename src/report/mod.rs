@@ -1,5 +1,6 @@
 //! Results to text, JSON and CSV, as pure functions.
 
+pub mod annual;
 mod column;
 pub mod csv;
 pub mod json;

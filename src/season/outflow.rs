@@ -29,6 +29,7 @@ pub(super) fn drawings(
     column: &Column,
     levels: &[Level],
     edges_m: &[f64],
+    zone_factor: f64,
     is_later: bool,
 ) -> Result<Vec<Drawing>, String> {
     let drawing = |level: &Level| {
@@ -36,7 +37,7 @@ pub(super) fn drawings(
         if level.sink.flow_m3s <= 0.0 {
             return Ok(Drawing { zone: None, flows_m3s });
         }
-        let Some(zone) = zone(column, &level.sink, 1.0) else {
+        let Some(zone) = zone(column, &level.sink, zone_factor) else {
             let is_dry = level.sink.centre_m >= column.surface_m();
             if let (true, true, Some(surface)) = (is_later, is_dry, flows_m3s.last_mut()) {
                 *surface = level.sink.flow_m3s;

@@ -27,7 +27,11 @@ pub(super) fn flowing(
     pool_m: f64,
 ) -> Option<Flowing> {
     let setting = resolve(site, column, groups, asked, pool_m);
-    let drawn = draw_levels(column, &levels(site, groups, &setting, pool_m, 0.5, CrestForm::Overflow), 1.0);
+    let drawn = draw_levels(
+        column,
+        &levels(site, groups, &setting, pool_m, 0.5, CrestForm::Overflow),
+        site.zone_factor(),
+    );
     let release = release(&drawn)?.aerated(site, &drawn, 0.5);
     Some(Flowing { setting, drawn, release })
 }

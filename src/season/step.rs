@@ -113,7 +113,8 @@ pub fn part_of_day(
         if steps > 0 && !levels.is_empty() {
             column = now.column(site).ok_or_else(no_water)?;
         }
-        let mut drawings = outflow::drawings(&column, &levels, &edges, steps > 0).map_err(fails)?;
+        let mut drawings =
+            outflow::drawings(&column, &levels, &edges, site.zone_factor(), steps > 0).map_err(fails)?;
         zones.get_or_insert_with(|| drawings.iter().map(|d| d.zone).collect::<Vec<_>>());
         let taken_in = site.season.inflow_takes_in * forcing.inflow.flow_m3s.max(0.0);
         let longest = outflow::longest_s(&now, &drawings, taken_in).clamp(SHORTEST_S, site.season.step_s);

@@ -5,6 +5,8 @@
 
 mod aeration;
 mod check;
+mod learned;
+mod levels;
 mod limits;
 mod order_texts;
 mod outlet;
@@ -23,6 +25,8 @@ use crate::target::Target;
 use crate::units::{Datum, Folder};
 
 pub use aeration::Aeration;
+pub use learned::{Learned, RawLearned, WINDOW_DAYS};
+pub use levels::level_groups;
 pub use limits::{
     Avoid, Avoided, Bins, Block, Crew, GenerationLost, Layer, Limits, Outage, Reserved, ShareRule, Undrawn,
 };
@@ -167,6 +171,8 @@ pub struct BandInputs {
     pub flow_share: f64,
     /// Least zone factor.
     pub zone_low: f64,
+    /// Zone factor between the two halves of the members; 1 unless another was learned.
+    pub zone_middle: f64,
     /// Greatest zone factor.
     pub zone_high: f64,
     /// What the method misses, standard deviation, C.
@@ -187,6 +193,7 @@ impl Default for BandInputs {
             heave_max_m: 3.0,
             flow_share: 0.02,
             zone_low: 0.70,
+            zone_middle: 1.0,
             zone_high: 1.15,
             release_c: 0.4,
             release_mg_l: 0.5,
@@ -258,6 +265,10 @@ pub struct Site {
     pub checks: CastChecks,
     /// Spread of the perturbed cases.
     pub band: BandInputs,
+    /// What was learned and is applied: [`Site::learned`].
+    applied: Option<learned::Applied>,
+    /// Days that learning looks back.
+    pub learning_days: u64,
     /// Header words of the logger, mapped to ours.
     pub columns: Vec<(String, String)>,
     /// Casts whose time or pool the site file gives.

@@ -5,7 +5,7 @@ use crate::units::Folder;
 
 use super::{
     BandInputs, Bins, Block, CastChecks, Chemistry, Crew, GenerationLost, Leakage, ListedCast, Opens,
-    Position, RawOrder, RawRiver, RawRow, RawSeason, WidthSource,
+    Position, RawLearned, RawOrder, RawRiver, RawRow, RawSeason, WidthSource,
 };
 
 /// Pool as read.
@@ -329,6 +329,10 @@ pub struct Raw {
     pub checks: CastChecks,
     /// Band.
     pub band: BandInputs,
+    /// What was learned.
+    pub learned: RawLearned,
+    /// Days that learning looks back.
+    pub learning_days: Option<u64>,
     /// How much of a record must be there.
     pub coverage: Coverage,
     /// Header mapping.

@@ -6,6 +6,7 @@ use crate::problem::Problem;
 
 use super::change::{Change, change};
 use super::day::{DayAnswer, day};
+use super::learned::Without;
 use super::setting::{Understood, given, now_setting};
 use super::words::{Given, Word};
 use super::{Context, Failure};
@@ -17,6 +18,8 @@ pub struct MixAnswer {
     pub setting: Setting,
     /// The setting judged.
     pub mix: Mix,
+    /// The release with nothing learned, where something is.
+    pub without: Option<Without>,
     /// The setting now, judged the same way, where it is known and another.
     pub now: Option<(Setting, Mix)>,
     /// What the change from it takes.
@@ -81,6 +84,7 @@ fn answer(
     };
     mix.warnings.extend(understood.notes);
     mix.warnings.extend(context.rules_off());
+    mix.warnings.extend(context.learned_flags());
     let (now, why_not) = judged_now(context, perturbed, &understood.setting);
     mix.warnings.extend(why_not);
     let change = now.as_ref().map(|(now, was)| {
@@ -104,7 +108,8 @@ fn answer(
         mix.conflicts.clone_from(&day.held.conflicts);
         mix.warnings.extend(other_blocks(day, &mix.warnings));
     }
-    Ok(MixAnswer { setting: understood.setting, mix, now, change, day })
+    let without = Without::of(std::iter::once((1.0, &mix)));
+    Ok(MixAnswer { setting: understood.setting, mix, without, now, change, day })
 }
 
 /// Limits that blocks other than the longest miss.

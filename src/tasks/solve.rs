@@ -56,7 +56,7 @@ pub fn solve(context: &Context, asked: &Given, wanted_c: f64) -> Result<Solved, 
         let setting = given(context, &asked).ok()?.setting;
         let (site, profile) = (context.site(), &context.profile);
         let levels = levels(site, &groups, &setting, profile.pool_m, 0.5, CrestForm::Overflow);
-        let drawn = draw_levels(&profile.column, &levels, 1.0);
+        let drawn = draw_levels(&profile.column, &levels, site.zone_factor());
         let release = release(&drawn)?.aerated(site, &drawn, 0.5);
         Some((release.temperature_c, release.oxygen_below_mg_l))
     };

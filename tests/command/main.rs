@@ -5,6 +5,7 @@
 mod aerated;
 mod ahead;
 mod answered;
+mod applied;
 mod casts;
 mod cautions;
 mod demo;
@@ -17,6 +18,7 @@ mod log;
 mod log_kept;
 mod loggers;
 mod new;
+mod note;
 mod past;
 mod prices;
 mod rank;

@@ -39,7 +39,8 @@ fn release(folder: &Folder, set: &[&str]) -> f64 {
 /// Two casts of one water, the gauge of the days between them.
 fn folder() -> (Folder, [f64; 3]) {
     let later = with(CAST, "2025-07-14", "2025-07-28");
-    let air = "season: { layer: 2, monthly: { air: 20, humidity: 60, wind: 2.5, cloud: 40 } }\n";
+    let air =
+        "season: { layer: 4, decide_days: 14, monthly: { air: 20, humidity: 60, wind: 2.5, cloud: 40 } }\n";
     let casts = [("2025-07-14.csv", CAST.as_bytes()), ("2025-07-28.csv", later.as_bytes())];
     let folder = Folder::new(&format!("{SITE}{air}"), &casts);
     let releases = [&BEFORE[..], &AFTER, &["N1=35"]].map(|set| release(&folder, set));
@@ -187,4 +188,20 @@ fn published_decisions_are_held_against_the_gauge_while_they_stood() {
     let none = past["no_hindcast"].as_str().unwrap();
     assert!(none.starts_with("no plan tells the inflow of") && none.contains("plans/past.csv"), "{none}");
     assert!(past["hindcast"].is_null());
+    // what the site file applies of the learned is put to the days, and the scores stay as computed without it
+    let text = fs::read_to_string(folder.site_file()).unwrap();
+    let learned = "learned: { bias: 0.5, window: [2024-05-01, 2024-09-30], n: 40 }\n";
+    fs::write(folder.site_file(), format!("{text}{learned}")).unwrap();
+    let told = log(&folder, &["--json"]).json();
+    assert_eq!(told["past"]["scores"]["temperature"], past["scores"]["temperature"]);
+    assert_eq!(told["past"]["learning"], past["learning"]);
+    let with = &told["past"]["scores"]["with_applied"]["temperature"];
+    let without = &past["scores"]["temperature"]["all"];
+    assert_abs_diff_eq!(number(&with["bias"]), number(&without["bias"]) - 0.5, epsilon = 1e-9);
+    let day = named(&told["past"]["days"], "date", "2025-07-18").clone();
+    assert_abs_diff_eq!(number(&day["plain_c"]), before, epsilon = 1e-9);
+    assert_abs_diff_eq!(number(&day["expected_c"]), before + 0.5, epsilon = 1e-9);
+    let middle = |band: &Value| 0.5 * (number(&band[0]) + number(&band[1]));
+    let plain = named(&past["days"], "date", "2025-07-18").clone();
+    assert_abs_diff_eq!(middle(&day["band_c"]), middle(&plain["band_c"]) + 0.5, epsilon = 1e-9);
 }

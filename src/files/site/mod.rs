@@ -1,5 +1,6 @@
 //! `site.yaml` into a raw site: every unknown key, wrong type and unit at once, each with its line.
 
+mod learned;
 mod limits;
 mod order_texts;
 mod outlets;
@@ -180,6 +181,10 @@ fn raw_site(map: Map) -> Raw {
     });
     within(&map, "checks", |m| checks(&read, m, &mut raw));
     within(&map, "band", |m| band(&read, m, &mut raw));
+    within(&map, "learned", |m| raw.learned = learned::learned(&read, m));
+    within(&map, "learning", |m| {
+        raw.learning_days = whole(m, "window_days").map(|days| days as u64);
+    });
     within(&map, "coverage", |m| {
         raw.coverage.hours = whole(m, "hours").unwrap_or(raw.coverage.hours);
         raw.coverage.days = whole(m, "days").unwrap_or(raw.coverage.days);

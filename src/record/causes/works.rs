@@ -58,7 +58,7 @@ fn explained(clues: &Clues) -> bool {
 /// A step as the spell began on a day when the log has no change of gates.
 pub(super) fn unlogged_step(clues: &Clues) -> Option<String> {
     let step = clues.step.as_ref().filter(|step| !step.decided)?;
-    let off = mean(clues.days.iter().map(|day| day.off_c()))?;
+    let off = mean(clues.days.iter().map(super::Clue::off_c))?;
     let least = STEP_C.max(STEP_TIMES * clues.usual_step_c.unwrap_or(0.0)).max(0.5 * off.abs());
     (step.by_c.abs() >= least && step.by_c * off > 0.0).then(|| {
         format!(
@@ -138,9 +138,9 @@ pub(super) fn peaking(clues: &Clues) -> Weighed {
     }
     let flows: Vec<_> =
         clues.days.iter().filter_map(|day| Some((day.flow_m3s, day.gauge_flow_m3s?))).collect();
-    let of = |pick: fn(&(f64, (f64, f64, f64))) -> f64| mean(flows.iter().map(pick));
+    let told = |pick: fn(&(f64, f64, f64)) -> f64| mean(flows.iter().map(|flow| pick(&flow.1)));
     if let (Some(set), Some(told), Some(least), Some(greatest)) =
-        (of(|f| f.0), of(|f| f.1.0), of(|f| f.1.1), of(|f| f.1.2))
+        (mean(flows.iter().map(|flow| flow.0)), told(|f| f.0), told(|f| f.1), told(|f| f.2))
     {
         let range = format!("from {} to {}", say::m3s(least, 1), say::m3s(greatest, 1));
         if greatest - least > PULSES * told {
@@ -174,30 +174,27 @@ pub(super) fn leakage(clues: &Clues) -> Weighed {
         let shares = shares(words)?;
         Some((words, mean(shares.iter().map(|s| s.0))?, shares))
     });
-    match found.min_by(|a, b| a.1.total_cmp(&b.1)) {
-        Some((words, share, each)) => {
-            let flow = mean(each.iter().map(|s| s.1)).unwrap_or_default();
-            let told = format!(
-                "it takes {} through {words}, {:.0}% of the release, to make the difference",
-                say::m3s(flow, 2),
-                100.0 * share
-            );
-            if share <= LEAK_SHARES[0] {
-                out.pro(1.0, told);
-                let scatter = root_mean_square(each.iter().map(|s| s.1 - flow)).unwrap_or_default();
-                if each.len() >= 4 && scatter <= STEADY * flow {
-                    out.pro(0.8, format!("on each of {} it is about the same flow", days(each.len())));
-                }
-            } else if share > LEAK_SHARES[1] {
-                out.con(1.0, told);
-            } else {
-                out.con(0.3, told);
+    if let Some((words, share, each)) = found.min_by(|a, b| a.1.total_cmp(&b.1)) {
+        let flow = mean(each.iter().map(|s| s.1)).unwrap_or_default();
+        let told = format!(
+            "it takes {} through {words}, {:.0}% of the release, to make the difference",
+            say::m3s(flow, 2),
+            100.0 * share
+        );
+        if share <= LEAK_SHARES[0] {
+            out.pro(1.0, told);
+            let scatter = root_mean_square(each.iter().map(|s| s.1 - flow)).unwrap_or_default();
+            if each.len() >= 4 && scatter <= STEADY * flow {
+                out.pro(0.8, format!("on each of {} it is about the same flow", days(each.len())));
             }
+        } else if share > LEAK_SHARES[1] {
+            out.con(1.0, told);
+        } else {
+            out.con(0.3, told);
         }
-        None => {
-            let side = if first.is_some_and(|day| day.off_c() > 0.0) { "warmer" } else { "colder" };
-            out.con(1.0, format!("no gate that is shut stands in water so much {side} on all of these days"));
-        }
+    } else {
+        let side = if first.is_some_and(|day| day.off_c() > 0.0) { "warmer" } else { "colder" };
+        out.con(1.0, format!("no gate that is shut stands in water so much {side} on all of these days"));
     }
     if clues.same_inside > 1 {
         let words = "a leak does not come and go: with the same gates the gauge lay inside the band on";

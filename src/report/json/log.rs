@@ -8,6 +8,7 @@ use crate::report::caution;
 use crate::tasks::Context;
 use crate::tasks::log::{Logged, Past};
 
+use super::applied::{LearnedJson, applied};
 use super::past::PastJson;
 use super::shape::{Head, ProblemJson};
 use super::{head, problem, written};
@@ -18,6 +19,8 @@ struct LogJson<'a> {
     head: Head,
     decisions: Vec<DecidedJson<'a>>,
     events: Vec<&'a Event>,
+    /// What the site file applies of the learned.
+    learned: Option<LearnedJson>,
     past: PastJson,
     problems: Vec<ProblemJson>,
     caution: &'static str,
@@ -47,6 +50,7 @@ pub fn log(context: &Context, past: &Past) -> String {
         head: head(context, &context.fingerprint, &[]),
         decisions: context.log.log.decisions().iter().map(|decided| one(context, decided)).collect(),
         events: context.log.log.events(),
+        learned: applied(context.site()),
         past: super::past::past(context, past),
         problems: context.log.problems.iter().map(problem).collect(),
         caution: caution(),

@@ -1,8 +1,10 @@
 //! Answers as JSON: SI whatever the display, absent is null, full precision.
 
+mod applied;
 mod learned;
 mod log;
 mod needed;
+mod note;
 mod past;
 mod rank;
 mod rank_shape;
@@ -40,6 +42,7 @@ use targets::{conflicts, points, targets};
 pub use learned::learned;
 pub use log::{log, logged};
 pub use needed::needed;
+pub use note::note;
 pub use rank::{rank, rank_priced};
 pub use river::river;
 pub use season::season;
@@ -238,6 +241,7 @@ fn head(context: &Context, fingerprint: &str, more_flags: &[Problem]) -> Head {
         version: env!("CARGO_PKG_VERSION"),
         method: METHOD,
         fingerprint: fingerprint.to_owned(),
+        learned: applied::applied(site),
         profile: ProfileJson {
             file: profile.file.clone(),
             taken: profile.taken.map(|t| t.to_rfc3339()),
@@ -315,6 +319,7 @@ fn release(mix: &Mix) -> ReleaseJson {
         oxygen_below_mg_l: mix.release.oxygen_below_mg_l,
         band_c: ends(mix.spread.band_c()),
         band_oxygen_mg_l: ends(mix.spread.band_oxygen_mg_l()),
+        plain: mix.plain.as_ref().map(|p| applied::plain(&p.release, &p.spread)),
     }
 }
 

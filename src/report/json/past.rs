@@ -4,6 +4,7 @@ use serde::Serialize;
 
 use crate::mix::groups;
 use crate::record::{Candidate, Misfit, Score, Scores, Verdict};
+use crate::report::text::learned::learned_yaml;
 use crate::site::Site;
 use crate::tasks::Context;
 use crate::tasks::log::{Hindcast, Past, PastDay, Scored, Spell, Turned};
@@ -168,6 +169,8 @@ struct LearningJson {
     suspect: Option<String>,
     release_c: Option<f64>,
     release_mg_l: Option<f64>,
+    /// The lines that apply it; null where nothing is kept.
+    site_lines: Option<Vec<String>>,
 }
 
 #[derive(Serialize)]
@@ -332,6 +335,7 @@ fn learning(site: &Site, past: &Past) -> LearningJson {
         suspect: of.suspect.as_ref().map(|suspect| si(&suspect.words())),
         release_c: of.learned.release_c,
         release_mg_l: of.learned.release_mg_l,
+        site_lines: learned_yaml(site, of).map(|text| text.lines().map(str::to_owned).collect()),
     }
 }
 

@@ -10,6 +10,7 @@ use crate::tasks::rank::{Lost, Part, PreferredSplit, RankAnswer, Shown, ShownPar
 use crate::tasks::season::Prices;
 use crate::units::{System, in_system};
 
+use super::applied::without;
 use super::rank_shape::{
     AskedJson, BinsJson, BlockAskedJson, BlockJson, ChangeJson, LeastJson, LostJson, MixedJson, NearestJson,
     NothingFitsJson, PocketJson, PriceJson, PricedJson, PricesJson, RankJson, RankedJson, RejectedJson,
@@ -132,6 +133,7 @@ fn ranked(site: &Site, shown: &Shown) -> RankedJson {
             band_oxygen_mg_l: ends(shown.spread.band_oxygen_mg_l()),
             time_mean_c: shown.temperature_c,
             by_flow_c: shown.by_flow_c,
+            plain: shown.without.as_ref().map(without),
         },
         targets: targets(site, &shown.targets),
         conflicts: conflicts(site, &shown.conflicts),

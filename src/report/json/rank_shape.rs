@@ -4,6 +4,7 @@ use std::collections::BTreeMap;
 
 use serde::Serialize;
 
+use super::applied::PlainJson;
 use super::shape::{CheckJson, Head, MovedJson, ReleaseJson, SettingJson, WarningJson, WellJson};
 use super::targets::{ConflictJson, PointJson, TargetJson};
 
@@ -109,6 +110,8 @@ pub(super) struct WholeDayJson {
     pub(super) band_oxygen_mg_l: Option<[f64; 2]>,
     pub(super) time_mean_c: f64,
     pub(super) by_flow_c: f64,
+    /// With nothing learned, as time means; null where nothing is.
+    pub(super) plain: Option<PlainJson>,
 }
 
 #[derive(Serialize)]

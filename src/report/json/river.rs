@@ -8,6 +8,7 @@ use crate::target::DAM;
 use crate::tasks::Context;
 use crate::tasks::river::{Arriving, RiverAnswer, Timely, Way, Window};
 
+use super::applied::{PlainJson, without};
 use super::shape::{Head, SettingJson, WarningJson};
 use super::targets::{ConflictJson, TargetJson};
 use super::{caution, head, setting, targets, warnings, written};
@@ -40,6 +41,8 @@ struct WayJson {
     temperature_c: f64,
     oxygen_mg_l: Option<f64>,
     band_c: Option<[f64; 2]>,
+    /// With nothing learned; null where nothing is.
+    plain: Option<PlainJson>,
     targets: Vec<TargetJson>,
     points: Vec<PointJson>,
     along: Vec<PlaceJson>,
@@ -79,6 +82,8 @@ struct PointJson {
     oxygen_min_mg_l: Option<f64>,
     band_c: Option<[f64; 2]>,
     band_oxygen_mg_l: Option<[f64; 2]>,
+    /// With nothing learned; null where nothing is.
+    plain_temperature_c: Option<f64>,
     targets: Vec<TargetJson>,
 }
 
@@ -172,6 +177,7 @@ fn way(context: &Context, way: &Way) -> WayJson {
         temperature_c: way.temperature_c(),
         oxygen_mg_l: way.oxygen_mg_l(),
         band_c: way.at_dam().band_c().map(<[f64; 2]>::from),
+        plain: way.without.as_ref().map(without),
         targets: at(context, way, DAM),
         points: points(context, way),
         along: along.collect(),
@@ -191,6 +197,7 @@ fn points(context: &Context, way: &Way) -> Vec<PointJson> {
     let point = |(i, p): (usize, &crate::site::Point)| {
         let there = way.course.as_ref().and_then(|c| c.points.iter().find(|a| a.point == i));
         let figures = there.map(|a| a.figures);
+        let plain = way.without_course.as_ref().and_then(|c| c.points.iter().find(|a| a.point == i));
         let spread = way.spreads.get(i);
         PointJson {
             name: p.name.clone(),
@@ -208,6 +215,7 @@ fn points(context: &Context, way: &Way) -> Vec<PointJson> {
             oxygen_min_mg_l: figures.and_then(|f| f.oxygen_min_mg_l),
             band_c: spread.and_then(Spread::band_c).map(<[f64; 2]>::from),
             band_oxygen_mg_l: spread.and_then(Spread::band_oxygen_mg_l).map(<[f64; 2]>::from),
+            plain_temperature_c: plain.map(|a| a.figures.mean_c),
             targets: at(context, way, &p.name),
         }
     };

@@ -6,7 +6,7 @@ use crate::mix::Setting;
 use crate::problem::harmless;
 use crate::report::text::river::unit_si;
 use crate::season::{
-    ColdDay, ColdWater, Decision, Exhausted, Fully, GateLife, Outcome, SeasonDay, Spell, StageDate,
+    ColdDay, ColdWater, Decision, Exhausted, Fully, GateLife, Outcome, Score, SeasonDay, Spell, StageDate,
     StageFall, TargetTally, Why,
 };
 use crate::site::Site;
@@ -15,8 +15,9 @@ use crate::tasks::season::{SeasonAnswer, SeasonRun, Seen};
 use crate::units::{System, in_system};
 
 use super::season_shape::{
-    BewareJson, ColdDayJson, ColdJson, DayJson, DecisionJson, GateJson, LeftJson, PointJson, ReleaseJson,
-    ReserveJson, RunJson, ScoreJson, SeasonJson, SpellJson, StageFallJson, StageJson, TargetJson,
+    BewareJson, ColdDayJson, ColdJson, DayJson, DecisionJson, GateJson, LeftJson, PlainDayJson,
+    PlainSeasonJson, PointJson, ReleaseJson, ReserveJson, RunJson, ScoreJson, SeasonJson, SpellJson,
+    StageFallJson, StageJson, TargetJson,
 };
 use super::{caution, head, moved_gates, setting, warnings, written};
 
@@ -35,14 +36,39 @@ pub fn season(context: &Context, answer: &SeasonAnswer) -> String {
         order: answer.order.iter().map(|criterion| criterion.name()).collect(),
         run: spoken,
         runs: answer.others.iter().map(|r| run(site, answer, r)).collect(),
+        plain: answer.without.as_ref().map(plain),
         warnings: warnings(&answer.notes),
         caution: caution(),
     };
     written(&shown)
 }
 
+/// A season with nothing learned.
+fn plain(of: &SeasonRun) -> PlainSeasonJson {
+    let day = |day: &SeasonDay| PlainDayJson {
+        date: day.date.to_string(),
+        temperature_c: day.release.map(|release| release.temperature_c),
+        oxygen_below_mg_l: day.release.and_then(|release| release.oxygen_below_mg_l),
+    };
+    PlainSeasonJson {
+        exhausted_on: on(&of.outcome.exhausted),
+        score: score(&of.outcome.score),
+        days: of.run.days.iter().map(day).collect(),
+    }
+}
+
+fn score(score: &Score) -> ScoreJson {
+    ScoreJson {
+        days_not_reached: score.lost,
+        worst_c: score.worst_c,
+        days_outside: score.days_outside,
+        degree_days_outside: score.degree_days,
+        moves: score.moves,
+    }
+}
+
 fn run(site: &Site, answer: &SeasonAnswer, of: &SeasonRun) -> RunJson {
-    let Outcome { exhausted, cold, score, .. } = &of.outcome;
+    let Outcome { exhausted, cold, .. } = &of.outcome;
     let outcome = &of.outcome;
     RunJson {
         plan: of.run.plan.clone(),
@@ -64,13 +90,7 @@ fn run(site: &Site, answer: &SeasonAnswer, of: &SeasonRun) -> RunJson {
         exhausted_unknown: unknown(exhausted),
         under_reserve_on: outcome.under_reserve.as_ref().and_then(on),
         targets: targets(site, of),
-        score: ScoreJson {
-            days_not_reached: score.lost,
-            worst_c: score.worst_c,
-            days_outside: score.days_outside,
-            degree_days_outside: score.degree_days,
-            moves: score.moves,
-        },
+        score: score(&outcome.score),
         cold_water: cold.iter().map(cold_water).collect(),
         reserves: (site.season.reserves.iter().zip(&outcome.reserves))
             .map(|(reserve, (_, under))| ReserveJson {

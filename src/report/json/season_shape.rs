@@ -15,8 +15,24 @@ pub(super) struct SeasonJson {
     #[serde(flatten)]
     pub(super) run: RunJson,
     pub(super) runs: Vec<RunJson>,
+    /// The season spoken of with nothing learned; null where nothing is.
+    pub(super) plain: Option<PlainSeasonJson>,
     pub(super) warnings: Vec<WarningJson>,
     pub(super) caution: &'static str,
+}
+
+#[derive(Serialize)]
+pub(super) struct PlainSeasonJson {
+    pub(super) exhausted_on: Option<String>,
+    pub(super) score: ScoreJson,
+    pub(super) days: Vec<PlainDayJson>,
+}
+
+#[derive(Serialize)]
+pub(super) struct PlainDayJson {
+    pub(super) date: String,
+    pub(super) temperature_c: Option<f64>,
+    pub(super) oxygen_below_mg_l: Option<f64>,
 }
 
 #[derive(Serialize)]

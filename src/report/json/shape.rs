@@ -4,6 +4,7 @@ use std::collections::BTreeMap;
 
 use serde::Serialize;
 
+use super::applied::{LearnedJson, PlainJson};
 use super::targets::{ConflictJson, PointJson, TargetJson};
 
 #[derive(Serialize)]
@@ -16,6 +17,8 @@ pub(super) struct Head {
     pub(super) version: &'static str,
     pub(super) method: &'static str,
     pub(super) fingerprint: String,
+    /// What was learned and is applied.
+    pub(super) learned: Option<LearnedJson>,
     pub(super) profile: ProfileJson,
 }
 
@@ -139,6 +142,8 @@ pub(super) struct ReleaseJson {
     pub(super) oxygen_below_mg_l: Option<f64>,
     pub(super) band_c: Option<[f64; 2]>,
     pub(super) band_oxygen_mg_l: Option<[f64; 2]>,
+    /// With nothing learned; null where nothing is.
+    pub(super) plain: Option<PlainJson>,
 }
 
 #[derive(Serialize)]

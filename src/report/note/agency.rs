@@ -5,6 +5,7 @@ use crate::problem::Weight;
 use crate::record::METHOD;
 use crate::report::caution;
 use crate::report::page::{Block, Table};
+use crate::report::text::learned::applied_words;
 use crate::site::Site;
 use crate::tasks::Context;
 use crate::tasks::Freshness;
@@ -182,6 +183,7 @@ fn data(context: &Context, answer: &NoteAnswer) -> Vec<String> {
         }
         None => "No weather is told.".to_owned(),
     });
+    out.push(learned(context, answer));
     if !answer.not_checked.is_empty() {
         let all: Vec<String> = answer.not_checked.iter().map(Unchecked::words).collect();
         out.push(format!("Limits not checked: {}.", all.join("; ")));
@@ -199,6 +201,21 @@ fn data(context: &Context, answer: &NoteAnswer) -> Vec<String> {
         say::dc(1.0, 1)
     ));
     out
+}
+
+/// What was learned of the gauge and is applied, and what is expected without it.
+fn learned(context: &Context, answer: &NoteAnswer) -> String {
+    let Some(applied) = applied_words(context.site()) else {
+        return "Nothing learned of the gauge is applied.".to_owned();
+    };
+    let without = answer.mix.without.as_ref().map(|without| {
+        let warm = banded(without.temperature_c, without.spread.band_c());
+        format!(
+            "; without it {warm}, oxygen {}",
+            aired(without.oxygen_mg_l, without.spread.band_oxygen_mg_l())
+        )
+    });
+    format!("Learned of the gauge: {applied}{}.", without.unwrap_or_default())
 }
 
 /// What was recorded in the river, and to when.

@@ -73,17 +73,23 @@ fn facts(context: &Context, answer: &NoteAnswer) -> Vec<(String, String)> {
         fact("Order of", subject(answer)),
     ];
     out.extend(site.order.to.clone().map(|to| fact("To", to)));
-    let total = |setting: &Setting| {
+    let in_all = |setting: &Setting| {
         let flows = setting.gates.iter().chain(&setting.leaks).map(|gate| gate.flow_m3s);
-        format!("{}; in all {}", gates(site, setting), flow(flows.sum()))
+        flow(flows.sum())
     };
+    let wanted = &answer.mix.setting;
+    let whole = || format!("{}; in all {}", gates(site, wanted), in_all(wanted));
+    // what is set now and what is to be stand in a table below, where both are known
     match &answer.before {
-        _ if answer.stands => {}
-        Some(before) => out.push(fact("Set now", total(before))),
-        None => out.push(fact("Set now", "NOT KNOWN".to_owned())),
+        _ if answer.stands => out.push(fact("Set", whole())),
+        Some(before) => {
+            out.push(fact("Release", format!("now {}, to be {}", in_all(before), in_all(wanted))));
+        }
+        None => {
+            out.push(fact("Set now", "NOT KNOWN".to_owned()));
+            out.push(fact("To be set", whole()));
+        }
     }
-    let label = if answer.stands { "Set" } else { "To be set" };
-    out.push(fact(label, total(&answer.mix.setting)));
     if !answer.stands {
         out.push(fact("Begins", format!("{}, not before", moment(site, answer.begins))));
     }

@@ -120,8 +120,9 @@ fn ranges(context: &Context, answer: &NoteAnswer) -> Picture {
     told.extend(ranked.map(|(at, shown): (usize, &Shown)| {
         (format!("no. {}", at + 1), shown.temperature_c, shown.spread.band_c())
     }));
-    let words: Vec<String> =
-        told.iter().map(|(label, c, band)| format!("{label} {}", banded(*c, *band))).collect();
+    // the ranked ones stand in a table
+    let own = told.iter().filter(|(label, ..)| !label.starts_with("no. "));
+    let words: Vec<String> = own.map(|(label, c, band)| format!("{label} {}", banded(*c, *band))).collect();
     let asked =
         rule.map_or_else(String::new, |rule| format!(" {} asks {}.", named(rule), super::words::asks(rule)));
     let shown = |c: f64| degree.from_si(c);

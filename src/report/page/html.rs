@@ -5,7 +5,7 @@ use std::fmt::{self, Display, Write as _};
 
 use super::picture::{ALONE, BELOW, PAIRED, Size, drawn};
 use super::table::Squared;
-use super::{Block, Page, Picture, clean};
+use super::{Block, Page, Picture, clean, joined};
 
 /// How it looks, on a screen and on paper.
 const STYLE: &str = include_str!("page.css");
@@ -60,21 +60,21 @@ fn one(block: &Block) -> String {
             format!("<p class=\"warning\"><strong>Warning:</strong> {}</p>\n", Escaped(text))
         }
         Block::List(texts) => {
-            let items: String = texts.iter().map(|text| format!("<li>{}</li>\n", Escaped(text))).collect();
+            let items = joined(texts, |text| format!("<li>{}</li>\n", Escaped(text)));
             format!("<ul>\n{items}</ul>\n")
         }
         Block::Facts(facts) => {
             let fact = |(label, value): &(String, String)| {
                 format!("<div><dt>{}</dt><dd>{}</dd></div>\n", Escaped(label), Escaped(value))
             };
-            format!("<dl>\n{}</dl>\n", facts.iter().map(fact).collect::<String>())
+            format!("<dl>\n{}</dl>\n", joined(facts, fact))
         }
         Block::Table(table) => rows(&Squared::of(table)),
         Block::Blanks(labels) => {
             let line = |label: &String| {
                 format!("<li><span>{}</span><span class=\"rule\"></span></li>\n", Escaped(label))
             };
-            format!("<ul class=\"blanks\">\n{}</ul>\n", labels.iter().map(line).collect::<String>())
+            format!("<ul class=\"blanks\">\n{}</ul>\n", joined(labels, line))
         }
         Block::Picture(picture) => figure(picture, ALONE),
         Block::Sheet => "</section>\n<section class=\"sheet\">\n".to_owned(),
@@ -93,12 +93,15 @@ fn beside(run: &[Block]) -> String {
     format!("<div class=\"pictures\">\n{figures}</div>\n")
 }
 
-/// A picture with its words, or its words alone where there is nothing to draw.
+/// A picture with its title and words. On paper the words of one that is drawn are left to the picture, its `desc` and
+/// the tables beside it; one that cannot be drawn is told in words there too.
 fn figure(picture: &Picture, size: Size) -> String {
-    let svg = drawn(picture, size).unwrap_or_default();
+    let svg = drawn(picture, size);
     let class = if size == PAIRED { " class=\"half\"" } else { "" };
+    let told = if svg.is_some() { " class=\"told\"" } else { "" };
     format!(
-        "<figure{class}>\n{svg}<figcaption><strong>{}.</strong> {}</figcaption>\n</figure>\n",
+        "<figure{class}>\n{}<figcaption><strong>{}.</strong> <span{told}>{}</span></figcaption>\n</figure>\n",
+        svg.unwrap_or_default(),
         Escaped(&picture.title),
         Escaped(&picture.words)
     )

@@ -1,7 +1,9 @@
 //! A piece as Markdown: CommonMark with pipe tables. Pictures are told in their words.
 
+use std::fmt::Write as _;
+
 use super::table::Squared;
-use super::{Block, Page, clean};
+use super::{Block, Page, clean, joined};
 
 /// A rule to write on. After a blank and before a line's end the marks stand for nothing else.
 const RULE: &str = "______________________________";
@@ -16,6 +18,7 @@ pub(super) fn written(page: &Page) -> String {
     out
 }
 
+/// Points, facts and blanks have each their bullet, since lists of one bullet that follow each other become one.
 fn one(block: &Block) -> String {
     match block {
         Block::Heading(level, text) => {
@@ -23,14 +26,10 @@ fn one(block: &Block) -> String {
         }
         Block::Words(text) => format!("{}\n", escaped(text)),
         Block::Warning(text) => format!("**Warning:** {}\n", escaped(text)),
-        Block::List(texts) => texts.iter().map(|text| format!("- {}\n", escaped(text))).collect(),
-        Block::Facts(facts) => {
-            facts.iter().map(|(l, value)| format!("- {} {}\n", bold(l), escaped(value))).collect()
-        }
+        Block::List(texts) => joined(texts, |text| format!("- {}\n", escaped(text))),
+        Block::Facts(facts) => joined(facts, |(l, value)| format!("* {} {}\n", bold(l), escaped(value))),
         Block::Table(table) => rows(&Squared::of(table)),
-        Block::Blanks(labels) => {
-            labels.iter().map(|label| format!("- {}: {RULE}\n", escaped(label))).collect()
-        }
+        Block::Blanks(labels) => joined(labels, |label| format!("+ {}: {RULE}\n", escaped(label))),
         Block::Picture(picture) => {
             format!("> {} {}\n", bold(&format!("Picture: {}", picture.title)), escaped(&picture.words))
         }
@@ -45,12 +44,12 @@ fn rows(table: &Squared) -> String {
     };
     let mut out = String::new();
     if !table.caption.is_empty() {
-        out.push_str(&format!("{}\n\n", bold(&table.caption)));
+        let _ = writeln!(out, "{}\n", bold(&table.caption));
     }
     out.push_str(&line(&table.head));
     let rules: Vec<&str> =
         (0..table.head.len()).map(|column| if table.is_right(column) { "---:" } else { "---" }).collect();
-    out.push_str(&format!("| {} |\n", rules.join(" | ")));
+    let _ = writeln!(out, "| {} |", rules.join(" | "));
     table.rows.iter().for_each(|row| out.push_str(&line(row)));
     out
 }

@@ -1,5 +1,7 @@
 //! A piece as plain text of 80 columns. A warning is marked by its word, pictures are told in theirs.
 
+use std::fmt::Write as _;
+
 use unicode_width::{UnicodeWidthChar, UnicodeWidthStr};
 
 use super::table::Squared;
@@ -54,7 +56,8 @@ fn hung(lead: &str, text: &str) -> String {
     let indent = lead.width();
     let body = wrapped_at(&format!("{:indent$}{}", "", clean(text)), indent, WIDTH);
     // the blanks of the first line are as many as the lead is wide
-    format!("{lead}{}", body.get(indent..).unwrap_or_default())
+    let text = format!("{lead}{}", body.get(indent..).unwrap_or_default());
+    format!("{}\n", text.trim_end())
 }
 
 fn told(facts: &[(String, String)]) -> String {
@@ -90,28 +93,28 @@ fn rows(table: &Squared) -> String {
         let cells: Vec<Vec<String>> =
             cells.iter().zip(&widths).map(|(cell, wide)| cut(cell, *wide)).collect();
         let high = cells.iter().map(Vec::len).max().unwrap_or(0);
-        (0..high)
-            .map(|k| {
-                let mut text = String::new();
-                for (column, (cell, wide)) in cells.iter().zip(&widths).enumerate() {
-                    let part = cell.get(k).map_or("", String::as_str);
-                    text.push_str(&padded(part, *wide, table.is_right(column)));
-                    text.push_str(&" ".repeat(GAP));
-                }
-                format!("{}\n", text.trim_end())
-            })
-            .collect()
+        let mut lines = String::new();
+        for k in 0..high {
+            let mut text = String::new();
+            for (column, (cell, wide)) in cells.iter().zip(&widths).enumerate() {
+                let part = cell.get(k).map_or("", String::as_str);
+                text.push_str(&padded(part, *wide, table.is_right(column)));
+                text.push_str(&" ".repeat(GAP));
+            }
+            let _ = writeln!(lines, "{}", text.trim_end());
+        }
+        lines
     };
     out.push_str(&line(&table.head));
     let rules: Vec<String> = widths.iter().map(|wide| "-".repeat(*wide)).collect();
-    out.push_str(&format!("{}\n", rules.join(&" ".repeat(GAP))));
+    let _ = writeln!(out, "{}", rules.join(&" ".repeat(GAP)));
     table.rows.iter().for_each(|row| out.push_str(&line(row)));
     out
 }
 
 /// Widths of the columns: as their cells need, the widest narrowed until the row fits. `None` where it does not.
 fn widths(table: &Squared) -> Option<Vec<usize>> {
-    let mut widths: Vec<usize> = table.head.iter().map(|cell| cell.width()).collect();
+    let mut widths: Vec<usize> = table.head.iter().map(|cell| cell.width().max(1)).collect();
     for row in &table.rows {
         widths.iter_mut().zip(row).for_each(|(wide, cell)| *wide = (*wide).max(cell.width()));
     }

@@ -19,6 +19,7 @@ use crate::report::sentence::flags_of;
 use super::{flow, labelled, list, oxygen, temperature, wrapped};
 
 pub use learning::{candidate, learning};
+pub(in crate::report) use past::{apart, count, signed, span};
 pub use past::{hindcast, left_out, level_name, scores, spell, spells, turned};
 
 /// The answer of `log`: every decision and event, the last first; then what happened.
@@ -72,6 +73,17 @@ fn happened(context: &Context, past: &Past) -> String {
     out.push_str(&section("Outside the band", indented(spells(context, past))));
     out.push_str(&section("The season gone through again", indented(hindcast(context, past))));
     out.push_str(&section("What the record teaches", indented(learning(context, past))));
+    out.push_str(&section(
+        "What is applied",
+        indented(super::learned::applied(context.site(), context.system).into_iter().collect()),
+    ));
+    if let Some(lines) = super::learned::learned_yaml(context.site(), &past.learning) {
+        out.push_str("For site.yaml, in the place of `learned` where it has one; nothing was written\n");
+        for line in lines.lines() {
+            _ = writeln!(out, "  {}", harmless(line));
+        }
+        out.push('\n');
+    }
     let notes: Vec<&Problem> = past.notes.iter().collect();
     out.push_str(&list("Assumed", &notes, false, context.system));
     out

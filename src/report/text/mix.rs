@@ -11,6 +11,7 @@ use crate::units::{Dimension, System, figure};
 use crate::withdrawal::{End, Side};
 
 use super::gates::moves;
+use super::learned::with_and_without;
 use super::targets::standings;
 use super::{drawn_column, fitted, flags_of, flow, labelled, length, list, oxygen, temperature, wrapped};
 
@@ -24,6 +25,8 @@ pub(super) fn body(context: &Context, answer: &MixAnswer) -> String {
         &format!("{} = {total} in total{leaks}", setting_words(site, &answer.setting, system)),
     );
     out.push_str(&labelled("Release", &release_line(&answer.mix, system)));
+    let learned = with_and_without(site, answer.without.as_ref(), system);
+    out.extend(learned.map(|words| labelled("Learned", &words)));
     if let Some(day) = &answer.day {
         out.push_str(&blocks(site, day, system));
     }

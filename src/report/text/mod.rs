@@ -1,6 +1,7 @@
 //! Answers as text a person can read aloud.
 
 mod gates;
+pub mod learned;
 pub mod log;
 mod mix;
 mod pool;

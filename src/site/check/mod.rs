@@ -1,6 +1,7 @@
 //! From raw to checked site: every problem at once, each at its path.
 
 mod aeration;
+mod learned;
 mod limits;
 mod months;
 mod operation;
@@ -21,7 +22,7 @@ use crate::problem::{Problem, any_refused};
 use crate::target::Target;
 use crate::units::{Datum, say};
 
-use super::{Outlet, Pool, Raw, Site, Whereabouts};
+use super::{Outlet, Pool, Raw, Site, WINDOW_DAYS, Whereabouts};
 
 /// Altitudes of settled land, m (choice, wide).
 const ALTITUDE_M: std::ops::RangeInclusive<f64> = -450.0..=6000.0;
@@ -73,6 +74,7 @@ impl Site {
         }
         let (now, now_wells) = operation::now(raw, &outlets, &mut problems);
         spread::spread(raw, &mut problems);
+        let learned = learned::learned(raw, &outlets, &mut problems);
         let season = season::season(raw, &mut problems);
         let order = order_texts::texts(raw, &mut problems);
         coverage(raw, &mut problems);
@@ -106,6 +108,8 @@ impl Site {
                 water: raw.water,
                 checks: raw.checks,
                 band: raw.band,
+                applied: None,
+                learning_days: raw.learning_days.unwrap_or(WINDOW_DAYS),
                 columns: raw.columns.clone(),
                 casts: raw.casts.clone(),
                 season,
@@ -113,7 +117,7 @@ impl Site {
                 demonstration: raw.demonstration,
             })
         })();
-        (site, problems)
+        (site.map(|site: Self| site.with_learned(learned)), problems)
     }
 }
 

@@ -94,7 +94,7 @@ fn considered(site: &Site, shown: &Shown) -> Considered {
     Considered {
         gates: gates(site, &shown.day),
         temperature_c: shown.temperature_c,
-        plain_temperature_c: None,
+        plain_temperature_c: shown.without.as_ref().map(|without| without.temperature_c),
         oxygen_mg_l: shown.oxygen_mg_l,
         moves: shown.change.as_ref().map(|change| change.moves.count),
         outside: outside.filter_map(|s| Some(site.targets.get(s.target)?.name.clone())).collect(),
@@ -116,23 +116,27 @@ pub(in crate::tasks) fn gates(site: &Site, setting: &Setting) -> Gates {
 /// What is expected at the dam and at every point of the river.
 fn expected(context: &Context, way: &Way) -> Vec<Expected> {
     let pair = |range: Option<(f64, f64)>| range.map(|(low, high)| [low, high]);
-    let of = |point: &str, temperature_c, oxygen_mg_l, spread: Option<&Spread>| Expected {
-        point: point.to_owned(),
-        temperature_c,
-        band_c: pair(spread.and_then(Spread::band_c)),
-        plain_temperature_c: None,
-        oxygen_mg_l,
-        band_oxygen_mg_l: pair(spread.and_then(Spread::band_oxygen_mg_l)),
-    };
-    let mut out = vec![of(DAM, Some(way.temperature_c()), way.oxygen_mg_l(), Some(&way.at_dam()))];
+    let of =
+        |point: &str, temperature_c, plain_temperature_c, oxygen_mg_l, spread: Option<&Spread>| Expected {
+            point: point.to_owned(),
+            temperature_c,
+            band_c: pair(spread.and_then(Spread::band_c)),
+            plain_temperature_c,
+            oxygen_mg_l,
+            band_oxygen_mg_l: pair(spread.and_then(Spread::band_oxygen_mg_l)),
+        };
+    let plain_c = way.without.as_ref().map(|without| without.temperature_c);
+    let mut out = vec![of(DAM, Some(way.temperature_c()), plain_c, way.oxygen_mg_l(), Some(&way.at_dam()))];
     let points = context.site().river.iter().flat_map(|river| &river.points).enumerate();
     for (index, point) in points {
         let arriving = || way.course.iter().flat_map(|course| &course.points);
         let figures = arriving().find(|at| at.point == index).map(|at| at.figures);
         let spread = arriving().zip(&way.spreads).find(|(at, _)| at.point == index).map(|(_, spread)| spread);
+        let plain = way.without_course.iter().flat_map(|course| &course.points).find(|at| at.point == index);
         out.push(of(
             &point.name,
             figures.map(|f| f.mean_c),
+            plain.map(|at| at.figures.mean_c),
             figures.and_then(|f| f.oxygen_mean_mg_l),
             spread,
         ));

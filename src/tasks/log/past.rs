@@ -3,6 +3,7 @@
 //!
 //! Methods: `docs/methods.md`, section 9.
 
+mod applied;
 mod days;
 mod hindcast;
 mod spells;
@@ -16,14 +17,12 @@ use chrono::NaiveDate;
 use crate::problem::Problem;
 use crate::rank::Progress;
 pub use crate::record::Cause;
-use crate::record::{
-    Learned, Learning, Left, Pair, Paired, Row, Score, Scores, WINDOW_DAYS, learn, pairs, scores,
-};
+use crate::record::{Learned, Learning, Left, Pair, Row, Score, Scores, learn, pairs, scores};
 use crate::series::Daily;
-use crate::site::Site;
 use crate::target::DAM;
 use crate::tasks::{Context, Failure};
 
+use applied::{Applied, applied, scored};
 use days::{Known, casts, known};
 use hindcast::hindcast;
 use spells::{From, spells};
@@ -149,6 +148,18 @@ pub struct Past {
 /// # Errors
 /// [`Failure::Stopped`], where `progress` stops it.
 pub fn past(context: &Context, progress: Progress) -> Result<Past, Failure> {
+    past_within(context, (NaiveDate::MIN, NaiveDate::MAX), progress)
+}
+
+/// The same of the days of a span alone; what the record teaches is taken from all of it.
+///
+/// # Errors
+/// As [`past`].
+pub fn past_within(
+    context: &Context,
+    span: (NaiveDate, NaiveDate),
+    progress: Progress,
+) -> Result<Past, Failure> {
     let site = context.site();
     let tellers = Tellers::of(context);
     let gauges: BTreeMap<String, Daily> = context
@@ -160,17 +171,25 @@ pub fn past(context: &Context, progress: Progress) -> Result<Past, Failure> {
     let nothing = Daily::default();
     let gauge = gauges.get(DAM).unwrap_or(&nothing);
     let casts = casts(context);
-    let days = known(context, &tellers, &casts, gauge);
+    let mut days = known(context, &tellers, &casts, gauge);
     let told: Vec<_> = days.iter().map(Known::day).collect();
-    let paired = pairs(site, &told, gauge, &|done| progress(DAYS * done)).ok_or(Failure::Stopped)?;
-    let learning = learn(site, &paired.pairs, WINDOW_DAYS);
+    let mut paired = pairs(site, &told, gauge, &|done| progress(DAYS * done)).ok_or(Failure::Stopped)?;
+    let learning = learn(site, &paired.pairs, site.learning_days);
     let later = |done: f64| progress(DAYS + (1.0 - DAYS) * done);
     let hindcast = hindcast(context, &tellers, &casts, gauge, &later)?;
+    let is_inside = |date: NaiveDate| (span.0..=span.1).contains(&date);
+    days.retain(|day| is_inside(day.date));
+    paired.keep(&is_inside);
     let warmth: Vec<_> = paired.pairs.iter().map(Pair::temperature_row).collect();
     let breath: Vec<_> = paired.pairs.iter().map(Pair::oxygen_row).collect();
-    let shown = shown(site, &days, &paired, gauge);
+    let computed: BTreeMap<NaiveDate, &Pair> =
+        paired.pairs.iter().chain(&paired.beside).map(|pair| (pair.date, pair)).collect();
+    let with_applied = applied(site, &days, &computed);
+    let shown = shown(&days, &computed, &with_applied, &paired.left_out, gauge);
+    let plain = site.without_learned();
     let spells = spells(&From {
         context,
+        plain: plain.as_ref().unwrap_or(site),
         days: &shown,
         known: &days,
         pairs: &paired.pairs,
@@ -182,7 +201,7 @@ pub fn past(context: &Context, progress: Progress) -> Result<Past, Failure> {
         decisions: turned(&tellers, &days, &gauges),
         temperature: scores(&warmth),
         oxygen: scores(&breath),
-        with_applied: applied(site).and_then(|learned| with(&paired.pairs, learned)),
+        with_applied: scored(&paired.pairs, &with_applied),
         with_learned: with(&paired.pairs, &learning.learned),
         left_out: paired.left_out,
         learning,
@@ -192,17 +211,8 @@ pub fn past(context: &Context, progress: Progress) -> Result<Past, Failure> {
     })
 }
 
-/// What the site file applies of what was learned.
-fn applied(_site: &Site) -> Option<&Learned> {
-    None
-}
-
 /// The scores of pairs with what was learned put to them; `None` where nothing was.
 fn with(pairs: &[Pair], learned: &Learned) -> Option<(Score, Score)> {
-    let taught = learned.bias_c.is_some()
-        || !learned.by_level_c.is_empty()
-        || learned.zone_factor.is_some()
-        || learned.oxygen_gain_mg_l.is_some();
     let moved = |band: (f64, f64), by: f64| (band.0 + by, band.1 + by);
     let rows = pairs.iter().map(|pair| {
         let (temperature_c, oxygen_mg_l) = pair.with(learned);
@@ -222,36 +232,31 @@ fn with(pairs: &[Pair], learned: &Learned) -> Option<(Score, Score)> {
         )
     });
     let (warmth, breath): (Vec<Row>, Vec<Row>) = rows.unzip();
-    taught.then(|| (Score::of(&warmth), Score::of(&breath)))
+    learned.has_effect().then(|| (Score::of(&warmth), Score::of(&breath)))
 }
 
 /// The days as they are shown.
-fn shown(site: &Site, days: &[Known], paired: &Paired, gauge: &Daily) -> Vec<PastDay> {
-    let applied = applied(site);
-    let pairs: BTreeMap<NaiveDate, &Pair> =
-        paired.pairs.iter().chain(&paired.beside).map(|pair| (pair.date, pair)).collect();
-    let left: BTreeMap<NaiveDate, &Left> = paired.left_out.iter().map(|left| (left.date, left)).collect();
+fn shown(
+    days: &[Known],
+    pairs: &BTreeMap<NaiveDate, &Pair>,
+    applied: &BTreeMap<NaiveDate, Applied>,
+    left_out: &[Left],
+    gauge: &Daily,
+) -> Vec<PastDay> {
+    let left: BTreeMap<NaiveDate, &Left> = left_out.iter().map(|left| (left.date, left)).collect();
     let one = |day: &Known| {
         let pair = pairs.get(&day.date);
-        let plain = pair.map(|pair| (pair.computed_c, pair.computed_mg_l));
-        let with = applied.and_then(|learned| Some(pair?.with(learned)));
-        let expected = with.or(plain);
-        let shift = |of: Option<f64>, from: Option<f64>| of.zip(from).map_or(0.0, |(of, from)| of - from);
-        let (by_c, by_mg_l) = (
-            shift(expected.map(|e| e.0), plain.map(|p| p.0)),
-            shift(expected.and_then(|e| e.1), plain.and_then(|p| p.1)),
-        );
-        let moved = |(low, high): (f64, f64), by: f64| (low + by, high + by);
+        let with = applied.get(&day.date);
         PastDay {
             date: day.date,
             decision: day.stood.as_ref().and_then(|stood| stood.decision),
-            expected_c: expected.map(|e| e.0),
-            plain_c: with.and(plain).map(|p| p.0),
-            band_c: pair.map(|pair| moved(pair.band_c, by_c)),
+            expected_c: with.map(|with| with.expected_c).or(pair.map(|pair| pair.computed_c)),
+            plain_c: with.and(pair).map(|pair| pair.computed_c),
+            band_c: with.map_or(pair.map(|pair| pair.band_c), |with| with.band_c),
             measured_c: gauge.temperature_c.on(day.date).map(|day| day.mean),
-            expected_mg_l: expected.and_then(|e| e.1),
-            plain_mg_l: with.and(plain).and_then(|p| p.1),
-            band_mg_l: pair.and_then(|pair| pair.band_mg_l).map(|band| moved(band, by_mg_l)),
+            expected_mg_l: with.map_or(pair.and_then(|pair| pair.computed_mg_l), |with| with.expected_mg_l),
+            plain_mg_l: with.and(pair).and_then(|pair| pair.computed_mg_l),
+            band_mg_l: with.map_or(pair.and_then(|pair| pair.band_mg_l), |with| with.band_mg_l),
             measured_mg_l: gauge.oxygen_mg_l.on(day.date).map(|day| day.mean),
             left_out: left.get(&day.date).map(|left| left.why.words()),
         }

@@ -126,8 +126,9 @@ pub fn note(context: &Context, asked: &NoteAsked, progress: Progress) -> Result<
     if way.as_ref().is_some_and(|way| way.as_ref().is_ok_and(|order| order.steps.is_empty())) {
         (stands, way) = (true, None);
     }
-    let lists = [Some(&mix.mix.not_checked), now.as_ref().map(|now| &now.mix.not_checked)];
-    let not_checked = unchecked::unchecked(lists.into_iter().flatten().map(Vec::as_slice));
+    // what is set now is held against no change
+    let of_now = now.iter().flat_map(|now| &now.mix.not_checked).filter(|text| text.contains(" of "));
+    let not_checked = unchecked::unchecked(mix.mix.not_checked.iter().chain(of_now), stands);
     let found = way.as_ref().and_then(|way| way.as_ref().ok());
     let stages = stage::stages(context, &river, found);
     let ready = Ready {

@@ -27,10 +27,25 @@ impl Unchecked {
     }
 }
 
-/// Lists as a mix gives them (`flow.max of N1, N2`) as one, the weightiest first.
-pub(super) fn unchecked<'a>(lists: impl IntoIterator<Item = &'a [String]>) -> Vec<Unchecked> {
+/// Limits of a change: they say nothing of gates that stand already.
+const OF_A_CHANGE: [Rule; 7] = [
+    Rule::MovesUnderFlow,
+    Rule::FlowChangePerHour,
+    Rule::FlowChangePerDay,
+    Rule::TemperatureChangePerHour,
+    Rule::TemperatureChangePerDay,
+    Rule::MaxMoves,
+    Rule::MaxCrewHours,
+];
+
+/// What mixes tell of it (`flow.max of N1, N2`) as one list, the weightiest first; without those of a change where
+/// nothing moves.
+pub(super) fn unchecked<'a>(told: impl Iterator<Item = &'a String>, stands: bool) -> Vec<Unchecked> {
     let mut out: Vec<Unchecked> = Vec::new();
-    for (rule, of) in lists.into_iter().flatten().filter_map(|text| read(text)) {
+    for (rule, of) in told.filter_map(|text| read(text)) {
+        if stands && OF_A_CHANGE.contains(&rule) {
+            continue;
+        }
         match out.iter_mut().find(|known| known.rule == rule) {
             Some(known) => known.of.extend(of),
             None => out.push(Unchecked { rule, of }),

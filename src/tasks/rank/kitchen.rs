@@ -8,6 +8,7 @@ use crate::mix::{
 use crate::rank::Ranked;
 use crate::tasks::Context;
 use crate::tasks::change::{Change, change};
+use crate::tasks::learned::Without;
 use crate::units::DAY_S;
 use crate::withdrawal::CrestForm;
 
@@ -34,7 +35,7 @@ impl Kitchen<'_> {
     pub(super) fn blend(&self, setting: &Setting) -> Option<Blend> {
         let (site, profile) = (self.context.site(), &self.context.profile);
         let levels = levels(site, self.groups, setting, profile.pool_m, 0.5, CrestForm::Overflow);
-        let drawn = draw_levels(&profile.column, &levels, 1.0);
+        let drawn = draw_levels(&profile.column, &levels, site.zone_factor());
         Some(release(&drawn)?.aerated(site, &drawn, 0.5))
     }
 
@@ -121,6 +122,7 @@ impl Kitchen<'_> {
         };
         let generation_lost_mw = over(&lost);
         let spread = over_day(&parts);
+        let without = Without::of(parts.iter().map(|p| (p.share, &p.mix)));
         let of_day: Vec<_> = parts.iter().map(|p| (p.share, &p.mix.release, &p.mix.spread)).collect();
         let Held { targets, conflicts, points, .. } = held(site, &of_day, self.day);
         let set: Vec<(f64, &Setting)> = parts.iter().map(|p| (p.share, &p.setting)).collect();
@@ -134,6 +136,7 @@ impl Kitchen<'_> {
             oxygen_pool_mg_l,
             by_flow_c,
             spread,
+            without,
             targets,
             conflicts,
             points,

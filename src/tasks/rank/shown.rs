@@ -6,6 +6,7 @@ use crate::problem::Problem;
 use crate::river::AtPoint;
 use crate::site::Site;
 use crate::tasks::change::Change;
+use crate::tasks::learned::Without;
 
 /// A part of the day.
 #[derive(Debug, Clone)]
@@ -48,6 +49,8 @@ pub struct Shown {
     pub by_flow_c: f64,
     /// Time means of the perturbed cases.
     pub spread: Spread,
+    /// The release with nothing learned, where something is.
+    pub without: Option<Without>,
     /// Standing against every target valid on the date, over the day.
     pub targets: Vec<TargetStanding>,
     /// Hard targets that leave nothing in common.

@@ -17,6 +17,7 @@ use ahead::Ahead;
 pub use ahead::{Arriving, Timely};
 pub use asked::Window;
 pub use observed::Observed;
+pub(in crate::tasks) use observed::observed_on;
 pub use way::{Way, WayPart, Which};
 
 /// The answer of `river`.
@@ -109,7 +110,14 @@ pub fn downstream(
         days: Vec::new(),
         timely: Vec::new(),
         observed: observed::observed(context),
-        notes: context.said.iter().cloned().chain(context.rules_off()).chain(notes(context)).collect(),
+        notes: context
+            .said
+            .iter()
+            .cloned()
+            .chain(context.rules_off())
+            .chain(context.learned_flags())
+            .chain(notes(context))
+            .collect(),
     };
     if let Some(way) = answer.spoken() {
         let windows = asked::windows(context, way);

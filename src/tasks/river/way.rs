@@ -1,9 +1,10 @@
 //! A release on its way down the river.
 
 use crate::mix::{Blend, Conflict, Mix, Setting, Spread, TargetStanding};
-use crate::river::{AtPoint, Course, Curve, Part, course, links};
+use crate::river::{self, AtPoint, Course, Curve, Part, links};
 use crate::tasks::Context;
 use crate::tasks::MixAnswer;
+use crate::tasks::learned::Without;
 use crate::tasks::rank::Shown;
 
 /// Hours of a day.
@@ -59,6 +60,10 @@ pub struct Way {
     pub course: Option<Course>,
     /// The perturbed cases at every point, as time means; empty without a course.
     pub spreads: Vec<Spread>,
+    /// The release with nothing learned, where something is.
+    pub without: Option<Without>,
+    /// What becomes of that.
+    pub without_course: Option<Course>,
 }
 
 impl Way {
@@ -87,6 +92,7 @@ impl Way {
         targets: &[TargetStanding],
         conflicts: &[Conflict],
     ) -> Self {
+        let without = Without::of(parts.iter().map(|p| (p.0, p.2)));
         let parts: Vec<WayPart> = parts
             .iter()
             .map(|(share, setting, mix)| WayPart {
@@ -97,10 +103,14 @@ impl Way {
             })
             .collect();
         let (site, date) = (context.site(), context.on.date_naive());
-        let course = course(site, &context.conditions, date, &released(&parts));
+        let course = river::course(site, &context.conditions, date, &released(&parts));
         let spreads = course.as_ref().map_or_else(Vec::new, |course| spreads(context, &parts, course));
+        let plain =
+            without.as_ref().map(|without| without.parts.iter().map(|p| part(p.0, &p.1.release)).collect());
+        let without_course =
+            plain.and_then(|parts: Vec<Part>| river::course(site, &context.conditions, date, &parts));
         let (targets, conflicts) = (targets.to_vec(), conflicts.to_vec());
-        Self { which, parts, targets, conflicts, course, spreads }
+        Self { which, parts, targets, conflicts, course, spreads, without, without_course }
     }
 
     /// The parts of the day as the river takes them.
@@ -140,13 +150,16 @@ impl Way {
 }
 
 fn released(parts: &[WayPart]) -> Vec<Part> {
-    let part = |p: &WayPart| Part {
-        hours: DAY_H * p.share,
-        flow_m3s: p.release.flow_m3s,
-        temperature_c: p.release.temperature_c,
-        oxygen_mg_l: p.release.oxygen_below_mg_l,
-    };
-    parts.iter().map(part).collect()
+    parts.iter().map(|p| part(p.share, &p.release)).collect()
+}
+
+fn part(share: f64, release: &Blend) -> Part {
+    Part {
+        hours: DAY_H * share,
+        flow_m3s: release.flow_m3s,
+        temperature_c: release.temperature_c,
+        oxygen_mg_l: release.oxygen_below_mg_l,
+    }
 }
 
 /// The perturbed cases of the release as every point sees them, as time means: each differs from what arrives by what

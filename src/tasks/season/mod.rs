@@ -66,6 +66,8 @@ pub struct SeasonAnswer {
     /// The others: the same plan in the other cases, then the other plans in the same case (and each in the other cases
     /// where that was asked), then the other strategies with the same plan in the same case.
     pub others: Vec<SeasonRun>,
+    /// The one spoken of with nothing learned, where something is.
+    pub without: Option<SeasonRun>,
     /// Whether the other plans were run in every case.
     pub every_case: bool,
     /// The first day.
@@ -128,7 +130,7 @@ pub fn season(
     notes.extend(notes::notes(context, &understood));
     let table = table::Table { context, understood: &understood, now: now.as_ref() };
     let main = table.main(progress)?;
-    let others = table.others(&main, progress, &mut notes)?;
+    let (others, without) = table.others(&main, progress, &mut notes)?;
     notes.extend(notes::turned(context, &main));
     notes.extend(notes::nearer(&main, &others, &understood.order));
     notes.extend(notes::spares(&main, &others));
@@ -138,6 +140,7 @@ pub fn season(
     Ok(SeasonAnswer {
         main,
         others,
+        without,
         every_case: understood.every_case,
         begins: understood.begins,
         decides: if now.is_some() { understood.decides } else { understood.begins },

@@ -67,13 +67,14 @@ impl Table<'_> {
     }
 
     /// The same plan in the other cases, the other plans in the same case (in every case where that is asked), the other
-    /// strategies; a case without air for all the days is left out with a flag.
+    /// strategies; a case without air for all the days is left out with a flag. Beside them the season spoken of with
+    /// nothing learned, where something is.
     pub(super) fn others(
         &self,
         main: &SeasonRun,
         progress: Progress,
         notes: &mut Vec<Problem>,
-    ) -> Result<Vec<SeasonRun>, Failure> {
+    ) -> Result<(Vec<SeasonRun>, Option<SeasonRun>), Failure> {
         let of = self.understood;
         // what was solved on one case is scored on the others, not solved again
         let again = main.run.again(&of.choosing);
@@ -97,8 +98,20 @@ impl Table<'_> {
                 put(&of.plan, &of.case, Choosing::By(strategy));
             }
         }
+        let plain = main.skies.site.without_learned();
+        let is_plain = plain.is_some();
+        jobs.extend(plain.map(|site| {
+            let skies = Skies { site: Arc::new(site), ..(*main.skies).clone() };
+            (main.plan.clone(), Arc::new(skies), again.clone())
+        }));
         let beside = Beside::new(jobs.len(), self.main_share(), progress);
-        jobs.par_iter().enumerate().map(|(i, job)| self.run(job, &|share| beside.tell(i, share))).collect()
+        let mut runs: Vec<SeasonRun> = jobs
+            .par_iter()
+            .enumerate()
+            .map(|(i, job)| self.run(job, &|share| beside.tell(i, share)))
+            .collect::<Result<_, _>>()?;
+        let without = if is_plain { runs.pop() } else { None };
+        Ok((runs, without))
     }
 
     /// Share of the work that the season spoken of is.

@@ -219,3 +219,33 @@ fn scenario_days_left_out_say_why() {
     assert_eq!(pair.before_c.len(), 3);
     assert!(pairs(&site, &days, &gauge, &|_| ControlFlow::Break(())).is_none());
 }
+
+#[test]
+fn law_learning_never_learns_on_top_of_what_is_applied() {
+    let plain = site();
+    let first = NaiveDate::from_ymd_opt(2025, 6, 1).unwrap();
+    let profile = still(&plain, first);
+    let setting = Setting::of(vec![Gate { outlet: 1, opening: 1.0, flow_m3s: 30.0 }]);
+    let days = [0, 1].map(|i| Day {
+        date: first + Days::new(i),
+        setting: Some(&setting),
+        profile: Some(&profile),
+        changed: false,
+        event: None,
+    });
+    let mean = |mean: f64| series::Day { mean, max: mean, min: mean, hourly_change: None };
+    let valid = days.iter().map(|d| (d.date, mean(9.0))).collect();
+    let gauge = Daily { temperature_c: series::Days { days: valid }, ..Daily::default() };
+    let pairs = |site| pairs(site, &days, &gauge, &|_| ControlFlow::Continue(())).unwrap();
+    let applied = plain.clone().with_learned(Some(Learned {
+        bias_c: Some(0.7),
+        by_level_c: vec![(1, -0.2)],
+        zone_factor: Some(0.8),
+        zone_range: Some((0.7, 0.9)),
+        oxygen_gain_mg_l: Some(0.5),
+        release_c: Some(0.1),
+        ..Learned::default()
+    }));
+    assert_eq!(pairs(&applied), pairs(&plain));
+    assert_eq!(pairs(&plain).pairs.len(), 2);
+}

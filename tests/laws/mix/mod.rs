@@ -6,6 +6,7 @@ mod checks;
 mod gain;
 mod judging;
 mod leaks;
+mod learned;
 mod limits;
 mod order;
 mod overlaps;

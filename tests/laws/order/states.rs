@@ -71,6 +71,7 @@ impl Stands {
         );
         let blend = release(&drawn);
         let nothing = Blend {
+            bias_c: 0.0,
             flow_m3s: 0.0,
             temperature_c: 0.0,
             oxygen_mg_l: None,

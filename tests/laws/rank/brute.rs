@@ -285,6 +285,8 @@ fn try_case(case: &Case, tally: &mut Tally) {
         ("parts of the day", question.blocks.len() > 1),
         ("conduits that add oxygen", dam.site.aerates()),
         ("such conduits that share levels", dam.site.aerates() && levels),
+        ("something learned", dam.site.learned().is_some()),
+        ("learned, of shared levels", dam.site.learned().is_some() && levels),
         ("left out", !question.without.is_empty()),
         ("hopeless", !works.hopeless().is_empty()),
     ] {

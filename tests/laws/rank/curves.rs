@@ -102,7 +102,7 @@ fn law_a_table_reads_what_the_level_gives() {
     for seed in 0..CASES {
         let level = level(seed);
         let Level { column, centre_m, opening, most_m3s, cold_c } = &level;
-        let curve = Curve::new(column, *centre_m, *opening, *most_m3s, Some(*cold_c)).unwrap();
+        let curve = Curve::new((column, 1.0), *centre_m, *opening, *most_m3s, Some(*cold_c)).unwrap();
         let mut apart = Apart::default();
         for flow in flows(&level, &mut Dice::new(seed)) {
             compare(&level, flow, &curve, &mut apart);

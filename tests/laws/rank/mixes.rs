@@ -135,9 +135,13 @@ impl Works<'_> {
         let (mut cold_m3s, mut mean_m3s) = (0.0, 0.0);
         let mut wholes: Vec<Whole> = Vec::new();
         for (block, levels) in blocks.iter().enumerate() {
+            let mut solids: Vec<(f64, f64)> = Vec::new();
             let streams = levels.iter().filter(|l| l.sink.flow_m3s > 0.0).map(|l| {
                 let Sink { centre_m, flow_m3s, opening } = l.sink;
-                (flow_m3s, self.curve(centre_m, opening).at(flow_m3s))
+                let mut water = self.curve(centre_m, opening).at(flow_m3s);
+                solids.push((flow_m3s, water.solids_mg_l()));
+                water.temperature_c += site.bias_c(l.outlets[0]).unwrap_or(0.0);
+                (flow_m3s, water)
             });
             let streams: Vec<_> = streams.collect();
             let flow_m3s: f64 = streams.iter().map(|s| s.0).sum();
@@ -156,7 +160,7 @@ impl Works<'_> {
             };
             wholes.push(Whole {
                 flow_m3s,
-                solids_mg_l: Some(mean(&gatemix::rank::Water::solids_mg_l)),
+                solids_mg_l: Some(solids.iter().map(|(q, s)| q * s).sum::<f64>() / flow_m3s),
                 share_flows_m3s: site.limits.shares.iter().map(|s| through(&s.outlets)).collect(),
                 ..Whole::default()
             });
@@ -207,7 +211,12 @@ impl Works<'_> {
         let gained = |(aeration, [flow, heat, oxygen, salt]): &(Option<Aeration>, [f64; 4])| {
             let (t, o) = (heat / flow, oxygen / flow);
             let saturation = site.saturation_below_mg_l(t, salt / flow);
-            flow * aeration.map_or(o, |a| a.by.below_mg_l(o, saturation, t))
+            let aired = aeration.map_or(o, |a| a.by.below_mg_l(o, saturation, t));
+            flow * match site.learned_gain_mg_l() {
+                Some(gain) if gain < 0.0 => (aired + gain).max(0.0),
+                Some(gain) => aired.max((aired + gain).min(saturation)),
+                None => aired,
+            }
         };
         let carried = conduits.values().filter(|c| c.1[0] > 0.0);
         carried.clone().map(gained).sum::<f64>() / carried.map(|c| c.1[0]).sum::<f64>()

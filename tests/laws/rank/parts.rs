@@ -111,7 +111,10 @@ impl<'a> Works<'a> {
         let solve = || {
             let Question { site, profile, .. } = *self.question;
             let cold_c = site.cold_water_c.first().copied();
-            Rc::new(Curve::new(&profile.column, centre_m, opening, self.most_m3s, cold_c).unwrap())
+            Rc::new(
+                Curve::new((&profile.column, site.zone_factor()), centre_m, opening, self.most_m3s, cold_c)
+                    .unwrap(),
+            )
         };
         Rc::clone(curves.entry(place(centre_m, opening)).or_insert_with(solve))
     }
@@ -125,7 +128,7 @@ impl<'a> Works<'a> {
     fn reaching(&self, sink: &Sink) -> Vec<Check> {
         let Question { site, profile, .. } = *self.question;
         let mut checks = Vec::new();
-        if let Some(zone) = zone(&profile.column, sink, 1.0) {
+        if let Some(zone) = zone(&profile.column, sink, site.zone_factor()) {
             limits::level(site, &profile.column, &zone, Of::Whole, &mut checks);
         }
         checks.retain(Check::broken);

@@ -4,7 +4,9 @@ use gatemix::mix::limits::Before;
 use gatemix::mix::{Day, Gate, Setting};
 use gatemix::profile::Profile;
 use gatemix::rank::{Criterion, Question};
-use gatemix::site::{Leakage, Opens, Position, Raw, RawAeration, RawOutlet, RawTarget, RawWell, Site};
+use gatemix::site::{
+    Leakage, Opens, Position, Raw, RawAeration, RawLearned, RawOutlet, RawTarget, RawWell, Site,
+};
 use proptest::prelude::*;
 
 use super::dice::Dice;
@@ -20,6 +22,8 @@ const POSITIONS: [&[f64]; 4] = [&[], &[0.0, 0.5, 1.0], &[0.3, 1.0], &[1.0, 0.6]]
 const NAMES: [&str; 5] = ["C", "A", "E", "B", "D"];
 /// Seed of what conduits add.
 const AIR: u64 = 0x0A1B;
+/// Seed of what was learned.
+const LEARNED: u64 = 0x1EA4;
 pub(super) const WELLS: [&str; 2] = ["West", "East"];
 
 /// A dam and what is asked of it.
@@ -85,6 +89,7 @@ pub(super) fn case(seed: u64, limits: bool) -> Case {
     let count = 2 + dice.below(4);
     raw.outlets = NAMES[..count].iter().map(|name| outlet(name, wells, with_losses, &water, dice)).collect();
     aerate(&mut raw, &mut Dice::new(seed ^ AIR));
+    learned(&mut raw, &mut Dice::new(seed ^ LEARNED));
     raw.targets = (0..dice.below(4)).map(|i| target(i, &water, dice)).collect();
     raw.bins.temperature_c = dice.one_of(&[0.5, 0.25, 1.0]);
     raw.bins.oxygen_mg_l = dice.one_of(&[0.5, 0.3]);
@@ -174,6 +179,25 @@ fn aerate(raw: &mut Raw, dice: &mut Dice) {
     };
     raw.wells.iter_mut().for_each(|well| well.aeration = some());
     raw.outlets.iter_mut().filter(|o| o.well.is_none()).for_each(|outlet| outlet.aeration = some());
+}
+
+/// Something learned is applied; drawn apart too.
+fn learned(raw: &mut Raw, dice: &mut Dice) {
+    if !dice.once_in(3) {
+        return;
+    }
+    let factor = dice.maybe(2, 0.7..1.15);
+    let level = raw.outlets[0].name.clone().filter(|_| dice.once_in(2));
+    raw.learned = RawLearned {
+        bias_c: dice.maybe(2, -1.5..1.5),
+        by_level_c: level.into_iter().map(|name| (name, dice.between(-1.5..1.5))).collect(),
+        zone_factor: factor,
+        zone_range: factor.map(|factor| (factor - 0.1, factor + 0.1)),
+        oxygen_gain_mg_l: dice.maybe(2, -1.0..2.0),
+        window: Some(["2025-05-01".into(), "2025-07-10".into()]),
+        n: Some(40),
+        ..RawLearned::default()
+    };
 }
 
 /// A crest instead of a port: stacked leaves, gated, or spilling by itself.

@@ -43,7 +43,7 @@ pub(super) fn draw(paper: &Paper, days: &DaysPicture) -> Option<()> {
     let limits = days.limits.iter().flat_map(|(_, from, to, value)| [(*from, *value), (*to, *value)]);
     let all: Vec<(NaiveDate, f64)> = banded.chain(lined).chain(limits).filter(|p| p.1.is_finite()).collect();
     let first = all.iter().map(|p| p.0).min()?;
-    let last = all.iter().map(|p| p.0).max()?.max(first + Days::new(1));
+    let last = all.iter().map(|p| p.0).max()?.max(first.checked_add_days(Days::new(1))?);
     let low = all.iter().map(|p| p.1).reduce(f64::min)?;
     let high = all.iter().map(|p| p.1).reduce(f64::max)?;
     let names = days.lines.iter().map(|l| words_mm(&l.0)).fold(0.0, f64::max);
@@ -66,7 +66,9 @@ pub(super) fn draw(paper: &Paper, days: &DaysPicture) -> Option<()> {
     }
     let mut ends = Vec::new();
     for (series, (name, points)) in days.lines.iter().enumerate() {
-        if let Some(end) = line(paper, &frame, points, series)? {
+        line(paper, &frame, points, series)?;
+        let last = points.iter().rev().find(|p| p.1.is_finite());
+        if let Some(end) = last.and_then(|p| Some((frame.x(p.0), frame.y(p.1)?))) {
             ends.push((end, series, name));
         }
     }
@@ -164,8 +166,8 @@ fn band(paper: &Paper, frame: &Frame, points: &[(NaiveDate, f64, f64)]) -> Optio
     Some(())
 }
 
-/// A line, whole over each run of days; yields its last place.
-fn line(paper: &Paper, frame: &Frame, points: &[(NaiveDate, f64)], series: usize) -> Option<Option<At>> {
+/// A line, whole over each run of days.
+fn line(paper: &Paper, frame: &Frame, points: &[(NaiveDate, f64)], series: usize) -> Option<()> {
     let points: Vec<_> = points.iter().copied().filter(|p| p.1.is_finite()).collect();
     let place = |p: &(NaiveDate, f64)| Some((frame.x(p.0), frame.y(p.1)?));
     let (mark, colour) = (MARKS[series % MARKS.len()], SERIES[series % SERIES.len()]);
@@ -183,7 +185,7 @@ fn line(paper: &Paper, frame: &Frame, points: &[(NaiveDate, f64)], series: usize
     for at in points.iter().skip(shift).step_by(stride).filter_map(place) {
         paper.mark(at, mark, colour)?;
     }
-    Some(points.last().and_then(place))
+    Some(())
 }
 
 /// Each limit's name once, above its first piece.

@@ -78,7 +78,7 @@ pub(super) struct Paper<'a> {
 impl<'a> Paper<'a> {
     /// A sheet that is written into a text.
     pub(super) fn new(into: &'a mut String, size: Size) -> Self {
-        let units = |mm: f64| (1..2000).take_while(|k| f64::from(*k) <= mm).count() as u32 * FINE;
+        let units = |mm: f64| (1..2000_u32).take_while(|k| f64::from(*k) <= mm).last().unwrap_or(1) * FINE;
         let (wide, high) = (units(size.wide), units(size.high));
         let whole: DrawingArea<_, Shift> = SVGBackend::with_string(into, (wide, high)).into_drawing_area();
         let ends = (0..wide.cast_signed(), 0..high.cast_signed());

@@ -5,10 +5,10 @@ use super::paper::{At, BLACK, GREY, LINE_MM, MARKS, PALE, Paper, SERIES, Side, a
 use crate::plot::Scale;
 use crate::report::page::PoolPicture;
 
-/// Zones drawn beside each other; more are told in the words.
-const ZONES: usize = 6;
-/// Width of a zone with its name, mm.
-const LANE: f64 = 5.0;
+/// Width of a zone with its name, mm. Those that leave the curves no room are told in the words alone.
+const LANE: f64 = 6.0;
+/// Room left for the curves, mm.
+const CURVES: f64 = 26.0;
 /// Least span of the temperature axis, in its unit (choice).
 const LEAST: f64 = 4.0;
 /// Marks along a curve.
@@ -39,18 +39,21 @@ pub(super) fn draw(paper: &Paper, pool: &PoolPicture) -> Option<()> {
     // an outlet may lie above the water, and is shown there
     let tops = pool.outlets.iter().map(|o| o.2).filter(|z| z.is_finite());
     let heights = Scale::new(pool.ends.0, tops.fold(pool.ends.1, f64::max))?;
+    let mut frame =
+        Frame { left: 0.0, right: paper.size.wide - 4.0, top: 10.0, foot: paper.size.high - 14.0, heights };
+    let told = told(pool, &frame);
     let names =
-        pool.outlets.iter().map(|o| words_mm(&o.0)).fold(0.0, f64::max).clamp(6.0, 0.2 * paper.size.wide);
+        told.iter().map(|t| words_mm(&t.names)).fold(0.0, f64::max).clamp(6.0, 0.22 * paper.size.wide);
     let axis = 15.0;
     let boxes = axis + names + 3.0;
     let zones = boxes + 7.0;
-    let left = zones + LANE * pool.zones.len().min(ZONES) as f64 + 2.0;
-    let frame =
-        Frame { left, right: paper.size.wide - 4.0, top: 10.0, foot: paper.size.high - 14.0, heights };
+    let lanes = |count: usize| zones + LANE * count as f64;
+    let shown = (0..=pool.zones.len()).take_while(|k| lanes(*k) + CURVES <= frame.right).last().unwrap_or(0);
+    frame.left = lanes(shown) + 2.0;
     water(paper, pool, &frame, axis)?;
-    outlets(paper, pool, &frame, (axis, boxes))?;
-    for (lane, (name, low, high)) in pool.zones.iter().take(ZONES).enumerate() {
-        zone(paper, &frame, zones + LANE * lane as f64, (name, *low, *high))?;
+    outlets(paper, &told, &frame, (axis, boxes))?;
+    for (lane, (name, low, high)) in pool.zones.iter().take(shown).enumerate() {
+        zone(paper, &frame, lanes(lane), (name, *low, *high))?;
     }
     curves(paper, pool, &frame)?;
     let y = paper.size.high - 2.0;
@@ -83,37 +86,50 @@ fn water(paper: &Paper, pool: &PoolPicture, frame: &Frame, axis: f64) -> Option<
     paper.words((0.5, 2.0), &fitted(&format!("elevation, {}", pool.elevation_unit), 40.0), Side::Right, true)
 }
 
-/// Outlets where they open: full boxes open, empty ones shut; those at one height share their words.
-fn outlets(paper: &Paper, pool: &PoolPicture, frame: &Frame, (left, boxes): At) -> Option<()> {
-    let mut told: Vec<(f64, bool, String)> = Vec::new();
+/// Outlets of one height and state.
+struct Told {
+    top: f64,
+    foot: f64,
+    open: bool,
+    names: String,
+}
+
+/// Outlets from above, those of one height and state together.
+fn told(pool: &PoolPicture, frame: &Frame) -> Vec<Told> {
+    let mut told: Vec<Told> = Vec::new();
     for (name, low, high, open) in &pool.outlets {
-        let (Some(a), Some(b)) = (frame.y(*high), frame.y(*low)) else {
+        let (Some(top), Some(foot)) = (frame.y(*high), frame.y(*low)) else {
             continue;
         };
-        // a low opening is still to be seen
-        let (a, b) = if b - a < 1.2 { (0.5 * (a + b) - 0.6, 0.5 * (a + b) + 0.6) } else { (a, b) };
-        // open and shut at one height stand beside each other
-        let x = if *open { boxes + 3.0 } else { boxes };
-        if *open {
-            paper.filled((x, a), (x + 2.2, b), BLACK)?;
-        } else {
-            paper.frame((x, a), (x + 2.2, b), BLACK, 2)?;
-        }
-        let middle = 0.5 * (a + b);
-        let same = |t: &&mut (f64, bool, String)| (t.0 - middle).abs() < 0.5 && t.1 == *open;
+        let same = |t: &&mut Told| (t.top - top).abs().max((t.foot - foot).abs()) < 0.5 && t.open == *open;
         match told.iter_mut().find(same) {
-            Some(there) => there.2 = format!("{} {name}", there.2),
-            None => told.push((middle, *open, name.clone())),
+            Some(there) => there.names = format!("{} {name}", there.names),
+            None => told.push(Told { top, foot, open: *open, names: name.clone() }),
         }
     }
-    told.sort_by(|a, b| a.0.total_cmp(&b.0).then(b.1.cmp(&a.1)));
-    let wants: Vec<f64> = told.iter().map(|t| t.0).collect();
-    let places = apart(&wants, (frame.top, frame.foot + 1.0));
-    for ((middle, open, names), y) in told.iter().zip(places) {
-        paper.words((left + 1.0, y), &fitted(names, boxes - left - 2.0), Side::Right, *open)?;
-        let begins = (left + 1.0 + words_mm(&fitted(names, boxes - left - 2.0))).min(boxes - 1.0);
-        let end = if *open { boxes + 3.0 } else { boxes };
-        paper.line(vec![(begins, y), (end, *middle)], GREY, 1)?;
+    told.sort_by(|a, b| (a.top + a.foot).total_cmp(&(b.top + b.foot)).then(b.open.cmp(&a.open)));
+    told
+}
+
+/// Full boxes are open, empty ones shut; each with its names and a line to them.
+fn outlets(paper: &Paper, told: &[Told], frame: &Frame, (left, boxes): At) -> Option<()> {
+    let middles: Vec<f64> = told.iter().map(|t| 0.5 * (t.top + t.foot)).collect();
+    let places = apart(&middles, (frame.top, frame.foot + 1.0));
+    for ((outlet, middle), y) in told.iter().zip(middles).zip(places) {
+        // a low opening is still to be seen
+        let half = (0.5 * (outlet.foot - outlet.top)).max(0.6);
+        // open and shut at one height stand beside each other
+        let x = if outlet.open { boxes + 3.0 } else { boxes };
+        let (a, b) = ((x, middle - half), (x + 2.2, middle + half));
+        if outlet.open {
+            paper.filled(a, b, BLACK)?;
+        } else {
+            paper.frame(a, b, BLACK, 2)?;
+        }
+        let names = fitted(&outlet.names, boxes - left - 2.0);
+        paper.words((left + 1.0, y), &names, Side::Right, outlet.open)?;
+        let begins = (left + 1.5 + words_mm(&names)).min(boxes - 1.0);
+        paper.line(vec![(begins, y), (x, middle)], GREY, 1)?;
     }
     Some(())
 }
@@ -129,8 +145,8 @@ fn zone(paper: &Paper, frame: &Frame, x: f64, (name, low, high): (&str, f64, f64
     }
     let name = fitted(name, frame.foot - frame.top);
     let half = 0.5 * words_mm(&name).min(frame.foot - frame.top);
-    let y = (0.5 * (a + b)).clamp(frame.top + half, frame.foot - half);
-    paper.words((x + 2.3, y), &name, Side::Upward, false)
+    let y = (0.5 * (a + b)).min(frame.foot - half).max(frame.top + half);
+    paper.words((x + 2.8, y), &name, Side::Upward, false)
 }
 
 fn curves(paper: &Paper, pool: &PoolPicture, frame: &Frame) -> Option<()> {

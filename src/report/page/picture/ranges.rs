@@ -18,7 +18,9 @@ pub(super) fn least_high(ranges: &RangesPicture) -> f64 {
 
 /// Draws the rows; nothing without a value or an end.
 pub(super) fn draw(paper: &Paper, ranges: &RangesPicture) -> Option<()> {
-    let (least, preferred, greatest) = ranges.asked;
+    let finite = |end: Option<f64>| end.filter(|value| value.is_finite());
+    let ends: [Option<f64>; 3] = <[_; 3]>::from(ranges.asked).map(finite);
+    let [least, preferred, greatest] = ends;
     let values =
         ranges.rows.iter().flat_map(|(_, value, band)| [*value, band.map(|b| b.0), band.map(|b| b.1)]);
     let all: Vec<f64> =
@@ -32,7 +34,7 @@ pub(super) fn draw(paper: &Paper, ranges: &RangesPicture) -> Option<()> {
     let (top, foot) = (8.0, paper.size.high - 9.5);
     let x = |value: f64| scale.share(value).map(|share| left + share.clamp(0.0, 1.0) * (right - left));
 
-    asked(paper, ranges, &x, (left, right), (top, foot))?;
+    asked(paper, ends, &x, (left, right), (top, foot))?;
     let marks = scale.marks(7);
     for mark in &marks.values {
         let x = x(*mark)?;
@@ -42,10 +44,10 @@ pub(super) fn draw(paper: &Paper, ranges: &RangesPicture) -> Option<()> {
         paper.words((x, foot + 3.0), &label, Side::Middle, false)?;
     }
     paper.line(vec![(left, foot), (right, foot)], BLACK, 2)?;
-    let legend = "dot: within what is asked; cross: outside; bar: band";
+    let legend = "dot: as asked; cross: not; bar: band";
     let under = if least.is_none() && greatest.is_none() { "dot: value; bar: band" } else { legend };
-    paper.words((0.5, foot + 7.0), &fitted(under, right), Side::Right, false)?;
-    paper.words((right + 14.0, foot + 3.0), &fitted(&ranges.unit, 14.0), Side::Left, true)?;
+    paper.words((0.5, foot + 7.0), &fitted(under, paper.size.wide - 1.0), Side::Right, false)?;
+    paper.words((right + 14.0, foot + 3.0), &fitted(&ranges.unit, 9.5), Side::Left, true)?;
 
     let pitch = (foot - top) / ranges.rows.len().max(1) as f64;
     for (at, (label, value, band)) in ranges.rows.iter().enumerate() {
@@ -71,31 +73,34 @@ pub(super) fn draw(paper: &Paper, ranges: &RangesPicture) -> Option<()> {
 /// What is asked: shaded between its ends, with its numbers above.
 fn asked(
     paper: &Paper,
-    ranges: &RangesPicture,
+    [least, preferred, greatest]: [Option<f64>; 3],
     x: &dyn Fn(f64) -> Option<f64>,
     (left, right): At,
     (top, foot): At,
 ) -> Option<()> {
-    let (least, preferred, greatest) = ranges.asked;
     if least.is_some() || greatest.is_some() {
         let a = least.and_then(x).unwrap_or(left);
         let b = greatest.and_then(x).unwrap_or(right);
         paper.shaded(vec![(a, top), (b, top), (b, foot), (a, foot)], GREY, 0.18)?;
     }
-    let mut told = Vec::new();
-    for (name, end) in [("least", least), ("preferred", preferred), ("greatest", greatest)] {
-        let Some((value, x)) = end.and_then(|value| Some((value, x(value)?))) else {
-            continue;
-        };
-        let dashes = if name == "preferred" { (1, 1) } else { (3, 1) };
-        paper.dashed(vec![(x, top), (x, foot)], BLACK, 3, dashes)?;
-        told.push(format!("{name} {value:.1}"));
+    for (end, dashes) in [(least, (3, 1)), (preferred, (1, 1)), (greatest, (3, 1))] {
+        if let Some(x) = end.and_then(x) {
+            paper.dashed(vec![(x, top), (x, foot)], BLACK, 3, dashes)?;
+        }
     }
+    let between = match (least, greatest) {
+        (Some(least), Some(greatest)) => Some(format!("{least:.1} to {greatest:.1}")),
+        (Some(least), None) => Some(format!("{least:.1} or more")),
+        (None, Some(greatest)) => Some(format!("{greatest:.1} or less")),
+        (None, None) => None,
+    };
+    let best = preferred.map(|value| format!("preferred {value:.1}"));
+    let told: Vec<String> = between.into_iter().chain(best).collect();
     if told.is_empty() {
         return Some(());
     }
-    let words = format!("asked, {}: {}", ranges.unit, told.join(", "));
-    paper.words((0.5, top - LINE_MM), &fitted(&words, paper.size.wide - 1.0), Side::Right, true)
+    let words = fitted(&format!("asked: {}", told.join(", ")), paper.size.wide - 1.0);
+    paper.words((0.5, top - LINE_MM), &words, Side::Right, true)
 }
 
 fn bar(paper: &Paper, (low, high): (f64, f64), y: f64) -> Option<()> {

@@ -17,23 +17,23 @@ use crate::units::{Dimension, System, figure, in_system, show};
 const SPELLS: usize = 5;
 
 /// A bias or an error of temperature.
-pub(super) fn apart(c: f64, system: System) -> String {
+pub(in crate::report) fn apart(c: f64, system: System) -> String {
     show(c, Dimension::TemperatureDifference, system, 2)
 }
 
 /// The same with its sign.
-fn signed(c: f64, system: System) -> String {
+pub(in crate::report) fn signed(c: f64, system: System) -> String {
     let told = apart(c, system);
     if c > 0.0 && !told.starts_with('-') { format!("+{told}") } else { told }
 }
 
 /// `12 days`, `1 day`.
-pub(super) fn count(days: usize) -> String {
+pub(in crate::report) fn count(days: usize) -> String {
     format!("{days} day{}", if days == 1 { "" } else { "s" })
 }
 
 /// Dates as a sentence gives them.
-fn span((from, to): (NaiveDate, NaiveDate)) -> String {
+pub(in crate::report) fn span((from, to): (NaiveDate, NaiveDate)) -> String {
     if from == to { from.to_string() } else { format!("{from} to {to}") }
 }
 
@@ -70,9 +70,9 @@ pub fn scores(context: &Context, past: &Past) -> Vec<String> {
     }
     let unit = system.unit(Dimension::TemperatureDifference);
     let mut out = vec![
-        format!("{:<22}{:>28}  {:>24}", "", format!("temperature, {unit}"), "oxygen, mg/L"),
+        format!("{:<21}{:>27}   {:>27}", "", format!("temperature, {unit}"), "oxygen, mg/L"),
         format!(
-            "{:<22}{:>5}{:>8}{:>7}{:>8}  {:>5}{:>8}{:>7}{:>8}",
+            "{:<21}{:>5}{:>8}{:>7}{:>7}   {:>5}{:>8}{:>7}{:>7}",
             "", "n", "bias", "RMSE", "inside", "n", "bias", "RMSE", "inside"
         ),
     ];
@@ -81,12 +81,12 @@ pub fn scores(context: &Context, past: &Past) -> Vec<String> {
             let said = |value: f64| if in_c { figure(value, unit, 2) } else { format!("{value:.2}") };
             let n = score.map_or(0, |score| score.n);
             let Some((score, misfit)) = score.and_then(|score| Some((score, score.misfit?))) else {
-                return format!("{n:>5}{:>8}{:>7}{:>8}", "-", "-", "-");
+                return format!("{n:>5}{:>8}{:>7}{:>7}", "-", "-", "-");
             };
             let inside = score.share_inside().map_or("-".into(), |share| format!("{:.0}%", 100.0 * share));
-            format!("{n:>5}{:>8}{:>7}{inside:>8}", said(misfit.bias), said(misfit.rmse))
+            format!("{n:>5}{:>8}{:>7}{inside:>7}", said(misfit.bias), said(misfit.rmse))
         };
-        out.push(format!("{name:<22}{}  {}", half(warmth, true), half(breath, false)));
+        out.push(format!("{name:<21}{}   {}", half(warmth, true), half(breath, false)));
     };
     row("All days".into(), Some(&past.temperature.all), Some(&past.oxygen.all));
     if let Some((warmth, breath)) = &past.with_applied {
@@ -162,7 +162,7 @@ pub fn spells(context: &Context, past: &Past) -> Vec<String> {
     told.sort_by_key(|spell| spell.days);
     let mut out: Vec<String> = told.into_iter().flat_map(|told| spell(told, system)).collect();
     if more > 0 {
-        out.push(format!("{more} smaller ones more: log --json tells all"));
+        out.push(format!("smaller ones beside these: {more}; log --json tells all"));
     }
     out
 }
@@ -176,7 +176,11 @@ pub fn spell(spell: &Spell, system: System) -> Vec<String> {
         signed(spell.off_c, system)
     )];
     let likely = |cause: &&Cause| !cause.speaks_for.is_empty();
-    let first = spell.causes.iter().take(2).filter(likely).count().max(1);
+    // what nothing speaks for is not told as if it might be
+    let first = spell.causes.iter().take(2).take_while(likely).count();
+    if first == 0 {
+        out.push("  nothing that is known speaks for one cause before the others".into());
+    }
     for (at, cause) in spell.causes.iter().take(first).enumerate() {
         let lead = if at == 0 { "may be" } else { "or" };
         out.push(format!("  {lead} {}", cause.name));

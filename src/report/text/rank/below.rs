@@ -11,6 +11,7 @@ use crate::tasks::rank::{
 };
 use crate::units::{Dimension, System, figure, in_system};
 
+use super::super::learned::with_and_without;
 use super::{block_name, flags, flow, labelled, oxygen, temperature};
 use crate::report::sentence::unsure_words;
 use crate::report::text::gates::{instruction, moves, named, openings};
@@ -65,6 +66,8 @@ pub(super) fn best(context: &Context, best: &Shown, system: System) -> String {
     // without a target and without a setting now there is nothing that puts it first but the fixed order
     let why = if why.is_empty() { String::new() } else { format!(" Why: {}.", why.join("; ")) };
     let mut out = labelled("No. 1", &format!("{}.{why}", set.join("; ")));
+    let learned = with_and_without(context.site(), best.without.as_ref(), system);
+    out.extend(learned.map(|words| labelled("Learned", &words)));
     out.extend(unsure.iter().map(|words| labelled("Unsure", words)));
     out.extend(beware.iter().map(|words| labelled("Beware", words)));
     out

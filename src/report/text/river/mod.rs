@@ -15,10 +15,12 @@ use crate::tasks::Context;
 use crate::tasks::river::{RiverAnswer, Way, Which, Window};
 use crate::units::System;
 
-use super::{flow, labelled, list, setting_words, wrapped};
+use super::learned::applied;
+use super::{flow, labelled, list, release_words, setting_words, wrapped};
 
 pub use ahead::{days, timely_words};
 pub use amounts::unit_si;
+pub(in crate::report) use amounts::{by, degree_days};
 pub use places::{PlaceRow, places, stage_words, window_words};
 pub use record::{PROVISIONAL, REVIEWED, SIGNS, calendar, record};
 pub use rules::{RuleRow, RuleStanding, conflicts, rules};
@@ -41,6 +43,7 @@ pub(super) fn body(context: &Context, answer: &RiverAnswer) -> String {
         };
         out.push_str(&labelled(title(way.which), &format!("{}{nearest}", set_words(context, way, system))));
     }
+    out.extend(learned(context, answer, system).map(|words| labelled("Learned", &words)));
     let leaves = context.on.format("%Y-%m-%d");
     let of = format!("{}; at points the water that leaves the dam on {leaves}", weather_words(context));
     out.push_str(&labelled("River", &of));
@@ -68,6 +71,17 @@ pub(super) fn body(context: &Context, answer: &RiverAnswer) -> String {
     let notes: Vec<&Problem> = answer.notes.iter().collect();
     out.push_str(&list("The river", &notes, false, system));
     out
+}
+
+/// What was learned and is applied, and the release of each way without it; `None` where nothing was.
+pub fn learned(context: &Context, answer: &RiverAnswer, system: System) -> Option<String> {
+    let mut out = applied(context.site(), system)?;
+    for way in &answer.ways {
+        let Some(without) = &way.without else { continue };
+        let words = release_words((without.temperature_c, without.oxygen_mg_l), &without.spread, system);
+        let _ = write!(out, "; without it {} {words}", way.which.word());
+    }
+    Some(out)
 }
 
 /// What the way down is computed with.

@@ -9,6 +9,7 @@ use crate::tasks::Context;
 use crate::tasks::season::{SeasonAnswer, SeasonRun};
 use crate::units::{Dimension, System, in_system, say, show};
 
+use super::super::learned::applied;
 use super::super::river::record::{days_of, tally};
 use super::super::river::{amounts, rules};
 use super::super::volume;
@@ -34,10 +35,34 @@ pub(super) fn first(context: &Context, answer: &SeasonAnswer, system: System) ->
         out.push((if i == 0 { "Outside" } else { "" }, words));
     }
     out.extend(above_full(context, &answer.main).map(|words| ("POOL", in_system(&words, system))));
+    out.extend(learned(context, answer, system).map(|words| ("Learned", words)));
     if let Some(ended) = &answer.main.run.ended {
         out.push(("STOPS", format!("on {}: {}", ended.date, harmless(&ended.words))));
     }
     out
+}
+
+/// What was learned and is applied, and the season without it.
+pub(super) fn learned(context: &Context, answer: &SeasonAnswer, system: System) -> Option<String> {
+    let applied = applied(context.site(), system)?;
+    let Some(without) = &answer.without else { return Some(applied) };
+    let both = [&answer.main, without];
+    let mean = |run: &SeasonRun| {
+        let released: Vec<f64> = run.run.days.iter().filter_map(|d| Some(d.release?.temperature_c)).collect();
+        let mean_c = released.iter().sum::<f64>() / released.len() as f64;
+        if released.is_empty() {
+            "nothing".to_owned()
+        } else {
+            show(mean_c, Dimension::Temperature, system, 1)
+        }
+    };
+    let [with, plain] = both.map(mean);
+    let outside = both.map(|run| days(u32::try_from(run.outcome.score.days_outside).unwrap_or(u32::MAX)));
+    let without = exhausted(&without.outcome, system);
+    Some(format!(
+        "{applied}: the release is {with} on the mean of the days, {} outside; without it {plain}, {}; runs out: {without}",
+        outside[0], outside[1]
+    ))
 }
 
 /// That the pool comes to stand above full, from when on, and how high at most.

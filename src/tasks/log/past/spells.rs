@@ -37,6 +37,8 @@ const HEAVED: usize = 60;
 /// Everything that the days were made from.
 pub(super) struct From<'a> {
     pub(super) context: &'a Context,
+    /// The site as if nothing were learned, as the pairs are computed.
+    pub(super) plain: &'a Site,
     pub(super) days: &'a [PastDay],
     pub(super) known: &'a [Known],
     pub(super) pairs: &'a [Pair],
@@ -151,7 +153,7 @@ fn runs<'h, 'a>(held: &'h [Held<'a>]) -> Vec<Vec<&'h Held<'a>>> {
 }
 
 fn clue(from: &From, held: &Held, readings: &Readings, flows: &Readings) -> Clue {
-    let site = from.context.site();
+    let site = from.plain;
     let (pair, groups) = (held.pair, groups(site));
     // what is applied of the learned stands on every figure alike
     let shift_c = held.expected_c - pair.computed_c;
@@ -203,7 +205,8 @@ fn heave_c(site: &Site, groups: &[Vec<usize>], profile: &Profile, held: &Held) -
         release_mg_l: 0.0,
         ..site.band
     };
-    let site = Site { band: only, ..site.clone() };
+    let mut site = site.clone();
+    site.band = only;
     let setting = held.known.setting.as_ref()?;
     let levels = levels(&site, groups, setting, profile.pool_m, 0.5, CrestForm::Overflow);
     let centre = release(&draw_levels(&profile.column, &levels, 1.0))?;
@@ -215,7 +218,7 @@ fn heave_c(site: &Site, groups: &[Vec<usize>], profile: &Profile, held: &Held) -
 
 /// Days to the next cast, and the release on its water under the pool of the day, C.
 fn next_c(from: &From, groups: &[Vec<usize>], held: &Held, gates: &[Gate]) -> Option<(i64, f64)> {
-    let site = from.context.site();
+    let site = from.plain;
     let profile = held.known.profile.as_deref()?;
     let next = from.casts.iter().find(|cast| cast.taken > profile.taken)?;
     let days = (next.taken?.with_timezone(&site.offset).date_naive() - held.day.date).num_days();

@@ -83,6 +83,9 @@ fn lines(model: &Model, session: &Session, width: usize) -> Vec<(String, Role)> 
         let role = if flag.kind == "limit" { Role::Outside } else { Role::Warn };
         say(format!("! {}", flag.advice(system)), role);
     }
+    if let Some(words) = text::learned::with_and_without(site, answer.without.as_ref(), system) {
+        say(format!("learned: {words}"), Role::Plain);
+    }
     if let Some(change) = &answer.change {
         // a well that carries otherwise is a change too, though no gate moves
         let wells = answer.now.as_ref().map(|now| text::wells_changed(site, &now.0, &answer.setting, system));

@@ -1,7 +1,7 @@
 //! What is said of the mix chosen.
 
 use crate::problem::harmless;
-use crate::report::text::{apart, rank, release_words, wells_changed};
+use crate::report::text::{apart, learned, rank, release_words, wells_changed};
 use crate::tasks::rank::Shown;
 use crate::tui::look::Role;
 use crate::units::in_system;
@@ -21,6 +21,9 @@ pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
     let old = if screen.old { ", from before" } else { "" };
     let title = format!("no. {} of {}{old}: {words}", at + 1, answer.mixes.len());
     say(&mut out, &title, width, 2, Role::Strong);
+    if let Some(words) = learned::with_and_without(site, shown.without.as_ref(), system) {
+        say(&mut out, &format!("learned: {words}"), width, 2, Role::Plain);
+    }
     for check in shown.limits.iter().filter(|c| c.broken()) {
         let words = harmless(&in_system(&check.words(site), system));
         say(&mut out, &format!("! misses {words}; {}", check.cure()), width, 2, Role::Outside);
