@@ -53,7 +53,7 @@ fn compare(system: System, name: &str) {
     assert!(n >= 10, "{past}");
     let scored = [
         format!("release: {n} days, bias {}", difference(&all["bias"])),
-        format!("{}/{} in the band", all["inside"], all["with_band"]),
+        format!("{}/{} in band", all["inside"], all["with_band"]),
     ];
     holds(text.lines().nth(3).unwrap(), &scored);
     // the day read

@@ -17,6 +17,7 @@ const WEEK: i64 = 7;
 pub(super) fn act(model: &mut Model, action: Action) -> Vec<Effect> {
     let Some(session) = model.session() else { return Vec::new() };
     let line = session.log.page == LogPage::Line;
+    model.message = None;
     match action {
         Action::Amend => return logging::amend(model, false),
         Action::Withdraw => return logging::amend(model, true),

@@ -18,6 +18,7 @@ const PAGE: usize = 10;
 
 /// Does what a key asks for.
 pub(super) fn act(model: &mut Model, action: Action) -> Vec<Effect> {
+    model.message = None;
     let Some(session) = model.session() else { return Vec::new() };
     let view = session.note.clone();
     match action {

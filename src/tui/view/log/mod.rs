@@ -149,11 +149,11 @@ fn by(si: f64, oxygen: bool, system: System) -> String {
     if oxygen { format!("{si:+.1} mg/L") } else { in_system(&say::dc(si, 1).signed().to_string(), system) }
 }
 
-/// A score in a line: `62 days, bias +0.4 F, RMSE 0.6 F, 45/62 in the band`.
+/// A score in a line: `62 days, bias +0.4 F, RMSE 0.6 F, 45/62 in band`.
 fn scored(score: &Score, oxygen: bool, system: System) -> String {
     let Some(misfit) = score.misfit else { return "no day can be held against the gauge".to_owned() };
     let inside = if score.with_band > 0 {
-        format!(", {}/{} in the band", score.inside, score.with_band)
+        format!(", {}/{} in band", score.inside, score.with_band)
     } else {
         String::new()
     };
