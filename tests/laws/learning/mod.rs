@@ -10,6 +10,9 @@ use made::{Hidden, Luck, Season};
 
 /// Seasons of water; each gives a record without and two with something hidden.
 const POOLS: u64 = 67;
+/// First seed of them. Learning was settled while looking at the seeds from 1000 on; nothing was changed after these
+/// were run.
+const UNSEEN: u64 = 5000;
 /// Pairs of a season at most.
 const PAIRS: u64 = 45;
 
@@ -76,10 +79,10 @@ fn outcome(season: &Season, luck: &mut Luck, hidden: Hidden) -> Outcome {
     Outcome { hidden, told: told.collect(), kept }
 }
 
-/// Records of every kind.
-fn outcomes() -> Vec<Outcome> {
+/// Records of every kind, from a first seed on.
+fn outcomes(first: u64) -> Vec<Outcome> {
     let season = |pool: u64| {
-        let mut luck = Luck::new(1000 + pool);
+        let mut luck = Luck::new(first + pool);
         let blends = pool % 2 == 1;
         let season = Season::new(&mut luck, PAIRS, blends);
         let below = luck.below(2) == 0;
@@ -108,7 +111,7 @@ fn widths(told: &[Told]) -> (usize, f64) {
 
 #[test]
 fn scenario_what_is_hidden_in_two_hundred_seasons_is_found() {
-    let all = outcomes();
+    let all = outcomes(UNSEEN);
     println!(
         "hidden: seasons; values, share of the 80 % intervals that hold the truth; informative ones, their"
     );
