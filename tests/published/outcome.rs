@@ -79,6 +79,7 @@ fn day(number: u64) -> SeasonDay {
     let release = Blend {
         flow_m3s: 20.0,
         temperature_c: 9.0,
+        bias_c: 0.0,
         oxygen_mg_l: Some(8.0),
         oxygen_below_mg_l: Some(8.0),
         salt_g_per_kg: 0.0,

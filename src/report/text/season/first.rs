@@ -57,7 +57,7 @@ pub(super) fn learned(context: &Context, answer: &SeasonAnswer, system: System) 
         }
     };
     let [with, plain] = both.map(mean);
-    let outside = both.map(|run| days(u32::try_from(run.outcome.score.days_outside).unwrap_or(u32::MAX)));
+    let outside = both.map(|run| days(run.outcome.score.days_outside));
     let without = exhausted(&without.outcome, system);
     Some(format!(
         "{applied}: the release is {with} on the mean of the days, {} outside; without it {plain}, {}; runs out: {without}",
