@@ -4,7 +4,16 @@ use std::fs;
 
 use serde_json::Value;
 
-use crate::{CAST, Folder, Run, SITE, run, with};
+use crate::{CAST, Folder, Run, run, with};
+
+/// The small site with few members: bands are not what is looked at here.
+fn small() -> String {
+    with(crate::SITE, "cold_water:", "band: { members: 40 }\ncold_water:")
+}
+
+fn usual() -> Folder {
+    Folder::new(&small(), &[("2025-07-14.csv", CAST.as_bytes())])
+}
 
 /// A note of a folder, more typed behind.
 fn note(folder: &Folder, more: &[&str]) -> Run {
@@ -33,7 +42,8 @@ release: { min: 5 }
 "#;
 
 fn well(more: &str) -> Folder {
-    let (head, rest) = SITE.split_once("outlets:").unwrap();
+    let whole = small();
+    let (head, rest) = whole.split_once("outlets:").unwrap();
     let (_, targets) = rest.split_once("targets:").unwrap();
     let site = format!("{head}{WELL}{more}targets:{targets}");
     Folder::new(&site, &[("2025-07-14.csv", CAST.as_bytes())])
@@ -41,7 +51,7 @@ fn well(more: &str) -> Folder {
 
 #[test]
 fn scenario_without_a_decision_it_is_of_the_first_ranked_mix_and_says_so() {
-    let folder = Folder::usual();
+    let folder = usual();
     let ranked = run(&["rank", folder.named(), "--json"]).json();
     let made = note(&folder, &["--json"]).json();
     assert_eq!((&made["of"], &made["decision"]), (&"first_ranked".into(), &Value::Null));
@@ -67,7 +77,7 @@ fn scenario_without_a_decision_it_is_of_the_first_ranked_mix_and_says_so() {
 
 #[test]
 fn scenario_right_after_a_decision_the_change_to_it_is_ordered_and_a_day_later_the_gates_stand() {
-    let folder = Folder::usual();
+    let folder = usual();
     decide(
         &folder,
         &["--set", "N1=20", "--set", "Sluice=10", "--until", "2025-07-21", "--trigger", "it warms"],
@@ -111,7 +121,7 @@ fn scenario_right_after_a_decision_the_change_to_it_is_ordered_and_a_day_later_t
 
 #[test]
 fn scenario_gates_that_are_named_come_before_the_log_and_what_is_set_already_stands() {
-    let folder = Folder::usual();
+    let folder = usual();
     decide(&folder, &["--set", "N1=20@100%", "--set", "Sluice=10@100%"]);
     let made =
         note(&folder, &["--set", "N1=25", "--set", "Sluice=5", "--at", "2025-07-16T06:30", "--json"]).json();
@@ -128,7 +138,8 @@ fn scenario_gates_that_are_named_come_before_the_log_and_what_is_set_already_sta
 fn scenario_where_there_is_no_order_the_step_in_the_way_is_told_and_nothing_that_looks_like_one() {
     let two = "--open N2=100% --set North=20".split(' ').collect::<Vec<_>>();
     let held = WELL.replace("positions", "moves_under_flow: false, positions");
-    let (head, rest) = SITE.split_once("outlets:").unwrap();
+    let whole = small();
+    let (head, rest) = whole.split_once("outlets:").unwrap();
     let site = format!("{head}{held}targets:{}", rest.split_once("targets:").unwrap().1);
     let held = Folder::new(&site, &[("2025-07-14.csv", CAST.as_bytes())]);
     let rated = well("limits: { max_temperature_change_per_hour: 0.5 }\n");
@@ -147,14 +158,14 @@ fn scenario_where_there_is_no_order_the_step_in_the_way_is_told_and_nothing_that
     }
     // the setting wanted itself
     let short = Folder::new(
-        &with(SITE, "now:", "release: { min: 15 }\nnow:"),
+        &with(&small(), "now:", "release: { min: 15 }\nnow:"),
         &[("2025-07-14.csv", CAST.as_bytes())],
     );
     let text = said(&short, &["--set", "N1=10"]);
     assert!(text.contains("the setting wanted itself misses release.min"), "{text}");
     // and where nobody knows what is set
     let unknown = Folder::new(
-        &with(SITE, "now: { N1: 30, Sluice: 5 }\n", "release: { wanted: 35 }\n"),
+        &with(&small(), "now: { N1: 30, Sluice: 5 }\n", "release: { wanted: 35 }\n"),
         &[("2025-07-14.csv", CAST.as_bytes())],
     );
     let text = said(&unknown, &[]);
@@ -168,7 +179,7 @@ fn scenario_where_there_is_no_order_the_step_in_the_way_is_told_and_nothing_that
 
 /// A site that leaves no limit of structure or water control out, with its own words for an order.
 fn ready() -> Folder {
-    let site = with(SITE, "demonstration: true\n", "");
+    let site = with(&small(), "demonstration: true\n", "");
     let site = with(&site, "example only", "the licence (invented)");
     let whole =
         "min_submergence: 4, pool_window: [50, 62], moves_under_flow: true, flow: { min: 2, max: 80 } }";
@@ -208,7 +219,7 @@ fn scenario_a_note_is_ready_when_nothing_stands_in_the_way_and_says_the_words_of
     let steps = made["order"]["steps"].as_array().unwrap();
     let times: Vec<f64> = steps.iter().map(|step| step["at_min"].as_f64().unwrap()).collect();
     assert!(times.first() == Some(&0.0) && times.iter().any(|at| *at >= 60.0), "{times:?}");
-    assert!(text.contains("2025-07-14 12:00 -07:00"), "{text}");
+    assert!(text.contains("2025-07-14 12:00"), "{text}");
     // each of these alone takes it back
     let reasons = |more: &[&str]| -> String {
         note(&folder, &[more, &["--json"]].concat()).json()["not_ready"].to_string()
@@ -253,7 +264,7 @@ fn scenario_every_quantity_stands_in_both_systems_and_no_word_judges() {
 #[test]
 fn scenario_hostile_names_and_words_stay_text_in_every_format() {
     let script = "<script>alert(1)</script>";
-    let site = with(SITE, "name: Test Dam (invented)", &format!("name: \"{script}\\e[31m\""));
+    let site = with(&small(), "name: Test Dam (invented)", &format!("name: \"{script}\\e[31m\""));
     let site = site.replace("Sluice", "\"<img>\"");
     let folder = Folder::new(&site, &[("2025-07-14.csv", CAST.as_bytes())]);
     let words = format!("{script}\u{1b}[31m | `a` _b_ \n# c");
@@ -276,7 +287,7 @@ fn scenario_hostile_names_and_words_stay_text_in_every_format() {
 
 #[test]
 fn scenario_a_file_is_written_whole_and_none_of_other_contents_is_written_over_unasked() {
-    let folder = Folder::usual();
+    let folder = usual();
     let path = folder.path().join("note.html");
     let out = path.to_str().unwrap();
     let first = note(&folder, &["--out", out]);
@@ -296,7 +307,7 @@ fn scenario_a_file_is_written_whole_and_none_of_other_contents_is_written_over_u
 
 #[test]
 fn scenario_what_cannot_be_understood_and_what_gives_no_note() {
-    let folder = Folder::usual();
+    let folder = usual();
     for (more, told) in [
         (&["--at", "noon"][..], "--at noon"),
         (&["--at", "2025-07-14T09:00"], "lies before the moment of the answer"),
@@ -309,7 +320,7 @@ fn scenario_what_cannot_be_understood_and_what_gives_no_note() {
         assert!(out.failed_with(2).contains(told), "{more:?}: {}", out.err);
     }
     let none = Folder::new(
-        &with(SITE, "now:", "release: { min: 500, wanted: 600 }\nnow:"),
+        &with(&small(), "now:", "release: { min: 500, wanted: 600 }\nnow:"),
         &[("2025-07-14.csv", CAST.as_bytes())],
     );
     let out = note(&none, &[]);
