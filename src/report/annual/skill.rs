@@ -5,8 +5,8 @@ use chrono::Month;
 
 use crate::record::Score;
 use crate::report::page::{Block, Table};
-use crate::report::text::log::{count, learning as teaches, left_out, level_name, signed, span};
 use crate::report::text::learned::applied;
+use crate::report::text::log::{count, learning as teaches, left_out, level_name, signed, span};
 use crate::report::text::river::degree_days;
 use crate::tasks::Context;
 use crate::tasks::log::{Scored, Spell};
