@@ -22,6 +22,8 @@ mod learned;
 mod limits;
 #[path = "bad_input/mutated.rs"]
 mod mutated;
+#[path = "bad_input/order_texts.rs"]
+mod order_texts;
 #[path = "bad_input/plans.rs"]
 mod plans;
 #[path = "bad_input/river.rs"]

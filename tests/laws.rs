@@ -6,6 +6,8 @@
     reason = "a test stops at its first surprise; some laws are exact"
 )]
 
+#[path = "laws/causes.rs"]
+mod causes;
 #[path = "laws/columns.rs"]
 mod columns;
 #[path = "laws/continuity.rs"]
@@ -20,6 +22,8 @@ mod levelling;
 mod mix;
 #[path = "laws/order/mod.rs"]
 mod order;
+#[path = "laws/pages/mod.rs"]
+mod pages;
 #[path = "laws/rank/mod.rs"]
 mod rank;
 #[path = "laws/river/mod.rs"]

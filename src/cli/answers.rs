@@ -139,9 +139,7 @@ pub(super) fn answer(cli: &Cli, clock: DateTime<Utc>, progress: Progress) -> Res
             let context = tasks::open(&common.asked(), clock)?;
             let logged = if asked.decides() {
                 let asked = asked.decision(setting, release.as_deref());
-                let logged = tasks::log::decide(&context, &asked, clock, &|done| progress.tell(done))?;
-                drop(progress);
-                Some(logged)
+                Some(tasks::log::decide(&context, &asked, clock, &|done| progress.tell(done))?)
             } else if let Some(text) = &asked.event {
                 Some(tasks::log::event(&context, &asked.event(text), clock)?)
             } else if let Some(word) = asked.idle(setting) {
@@ -151,10 +149,28 @@ pub(super) fn answer(cli: &Cli, clock: DateTime<Utc>, progress: Progress) -> Res
                 None
             };
             let shown = match (&logged, common.json) {
-                (None, true) => json::log(&context),
-                (None, false) => common.color.of(&text::log(&context)),
+                (None, is_json) => {
+                    let past = tasks::log::past(&context, &|done| progress.tell(done))?;
+                    drop(progress);
+                    if is_json {
+                        json::log(&context, &past)
+                    } else {
+                        common.color.of(&text::log::log(&context, &past))
+                    }
+                }
                 (Some(logged), true) => json::logged(logged),
-                (Some(logged), false) => common.color.of(&text::logged(&context, logged)),
+                (Some(logged), false) => common.color.of(&text::log::logged(&context, logged)),
+            };
+            (shown, End::Answered)
+        }
+        Some(Command::Note { common, setting, asked, piece }) => {
+            let context = tasks::open(&common.asked(), clock)?;
+            let answer = tasks::note::note(&context, &asked.asked(setting), &|done| progress.tell(done))?;
+            drop(progress);
+            let shown = if common.json {
+                json::note(&context, &answer)
+            } else {
+                piece.written(&report::note::page(&context, &answer))?
             };
             (shown, End::Answered)
         }

@@ -11,6 +11,7 @@ use crate::units::System;
 
 use super::colour::Colour;
 use super::entry::Entry;
+use super::note::{Noted, Piece};
 
 /// Which gates, how far open: release temperature and oxygen from a layered reservoir.
 #[derive(Debug, Parser)]
@@ -118,6 +119,18 @@ pub(super) enum Command {
         /// What the well of the gates opened carries; without a setting, the total release the first is ranked at.
         #[arg(long, value_name = "FLOW", requires = "decide")]
         release: Option<String>,
+    },
+    /// A change order for those who carry it out, and a note for the agencies: of the gates set, else of the last
+    /// decision that holds, else of the first ranked mix.
+    Note {
+        #[command(flatten)]
+        common: Common,
+        #[command(flatten)]
+        setting: Setting,
+        #[command(flatten)]
+        asked: Noted,
+        #[command(flatten)]
+        piece: Piece,
     },
     /// Are my files sound? Every problem of the site file, of every cast and of every series.
     Check {

@@ -5,6 +5,7 @@ mod arguments;
 mod colour;
 mod endings;
 mod entry;
+mod note;
 mod progress;
 
 use std::ffi::OsString;

@@ -58,7 +58,7 @@ pub fn read(path: &Path) -> Result<ReadLog, Problem> {
     match File::open(path) {
         Err(error) if error.kind() == io::ErrorKind::NotFound => Ok(ReadLog::default()),
         Err(error) => Err(unreadable(path, &error)),
-        Ok(mut file) => Ok(parsed(path, bytes(path, &mut file)?)),
+        Ok(mut file) => Ok(read_from(path, bytes(path, &mut file)?)),
     }
 }
 
@@ -80,7 +80,7 @@ pub fn append(path: &Path, make: &dyn Fn(&Log) -> Result<Line, Problem>) -> Resu
     let there = bytes(path, &mut file)?;
     let torn = there.last().is_some_and(|&byte| byte != b'\n');
     let size = there.len() as u64;
-    let known = parsed(path, there);
+    let known = read_from(path, there);
     let line = make(&known.log)?;
     let json = serde_json::to_string(&line).map_err(|error| {
         Problem::refused("cannot-write", format!("the line cannot be told: {error}"), "")
@@ -157,8 +157,8 @@ fn bytes(path: &Path, file: &mut File) -> Result<Vec<u8>, Problem> {
     Ok(bytes)
 }
 
-/// The lines of a log; what cannot be read is told and left.
-fn parsed(path: &Path, bytes: Vec<u8>) -> ReadLog {
+/// The lines of a log from its bytes; what cannot be read is told and left.
+pub fn read_from(path: &Path, bytes: Vec<u8>) -> ReadLog {
     let mut problems = Vec::new();
     let mut lines = Vec::new();
     let ends = bytes.last().is_none_or(|&byte| byte == b'\n');

@@ -6,7 +6,7 @@
 use crate::intake::{self, ASSUMED_LOSS, Entering, Port, Shaft};
 use crate::profile::Column;
 use crate::site::Site;
-use crate::withdrawal::{CrestForm, Sink, zone};
+use crate::withdrawal::{CrestForm, LEAST_FLOW_M3S, Opening, Sink, zone};
 
 use super::band::{GREATEST_LOSS, LEAST_LOSS};
 use super::levels::{Gate, Seat, Setting, seat};
@@ -291,7 +291,9 @@ fn entering(column: &Column, seat: Option<Seat>, flow_m3s: f64, zone_factor: f64
     let Some(seat) = seat else {
         return still(column, column.surface_m());
     };
-    let sink = Sink { centre_m: seat.centre_m, flow_m3s, opening: seat.opening };
+    // the zone over an edge reaches up to the surface however little passes, so the water before it begins there
+    let least_m3s = if matches!(seat.opening, Opening::Crest { .. }) { LEAST_FLOW_M3S } else { 0.0 };
+    let sink = Sink { centre_m: seat.centre_m, flow_m3s: flow_m3s.max(least_m3s), opening: seat.opening };
     match zone(column, &sink, zone_factor).and_then(|z| z.draw(column)) {
         Some(draw) => Entering {
             temperature_c: draw.temperature_c,

@@ -2,12 +2,14 @@
 //!
 //! Methods: `docs/methods.md`, section 9.
 
+mod causes;
 mod learn;
 pub mod line;
 mod log;
 mod pairs;
 mod scores;
 
+pub use causes::{Cause, Clue, Clues, Step, causes, otherwise, range, swing_h};
 pub use learn::{
     Candidate, Effect, Figure, LEAST_DAYS, LEAST_STRETCHES, Learning, Sensor, Suspect, Verdict, learn,
 };

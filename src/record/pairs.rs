@@ -120,6 +120,17 @@ pub struct Paired {
     pub pairs: Vec<Pair>,
     /// Days left out, by date, each with its reason.
     pub left_out: Vec<Left>,
+    /// What was computed of days left out, by date, where it could be: to be looked at, not to be learned from.
+    pub beside: Vec<Pair>,
+}
+
+impl Paired {
+    /// Drops what is of other dates.
+    pub fn keep(&mut self, is_wanted: &dyn Fn(NaiveDate) -> bool) {
+        self.pairs.retain(|pair| is_wanted(pair.date));
+        self.left_out.retain(|left| is_wanted(left.date));
+        self.beside.retain(|pair| is_wanted(pair.date));
+    }
 }
 
 /// Holds every day against the gauge, as computed with nothing learned. `None` where `progress` stopped it.
@@ -134,29 +145,41 @@ pub fn pairs(site: &Site, days: &[Day], gauge: &Daily, progress: Progress) -> Op
         if progress(before as f64 / days.len() as f64) == ControlFlow::Break(()) {
             return None;
         }
-        Some(pair(site, &groups, day, gauge).map_err(|why| Left { date: day.date, why }))
+        let computed = computed(site, &groups, day, gauge);
+        let why = barred(day, gauge, &computed);
+        Some((day.date, computed.ok(), why))
     };
-    let all: Vec<Result<Pair, Left>> = days.par_iter().map(one).collect::<Option<_>>()?;
+    let all: Vec<(NaiveDate, Option<Pair>, Option<Why>)> = days.par_iter().map(one).collect::<Option<_>>()?;
     let mut out = Paired::default();
-    for day in all {
-        match day {
-            Ok(pair) => out.pairs.push(pair),
-            Err(left) => out.left_out.push(left),
-        }
+    for (date, pair, why) in all {
+        let is_left = why.is_some();
+        out.left_out.extend(why.map(|why| Left { date, why }));
+        if is_left { out.beside.extend(pair) } else { out.pairs.extend(pair) }
     }
     out.pairs.sort_by_key(|pair| pair.date);
     out.left_out.sort_by_key(|left| left.date);
+    out.beside.sort_by_key(|pair| pair.date);
     Some(out)
 }
 
-fn pair(site: &Site, groups: &[Vec<usize>], day: &Day, gauge: &Daily) -> Result<Pair, Why> {
+/// Why a day is no pair, though it may have been computed.
+fn barred(day: &Day, gauge: &Daily, computed: &Result<Pair, Why>) -> Option<Why> {
+    let measured = |of: &Days| of.days.contains_key(&day.date);
     if let Some(words) = day.event {
-        return Err(Why::Event(words.to_owned()));
+        return Some(Why::Event(words.to_owned()));
     }
+    match computed {
+        Err(Why::NotSet) => Some(Why::NotSet),
+        _ if day.changed => Some(Why::Changed),
+        Err(why) => Some(why.clone()),
+        Ok(_) if !measured(&gauge.temperature_c) && !measured(&gauge.oxygen_mg_l) => Some(Why::NoGauge),
+        Ok(_) => None,
+    }
+}
+
+/// What was set on a day, computed on its cast, with what the gauge read.
+fn computed(site: &Site, groups: &[Vec<usize>], day: &Day, gauge: &Daily) -> Result<Pair, Why> {
     let setting = day.setting.ok_or(Why::NotSet)?;
-    if day.changed {
-        return Err(Why::Changed);
-    }
     let profile = day.profile.ok_or(Why::NoCast)?;
     let taken = profile.taken.ok_or(Why::Undated)?.with_timezone(&site.offset).date_naive();
     let age_days = (day.date - taken).num_days();
@@ -166,9 +189,6 @@ fn pair(site: &Site, groups: &[Vec<usize>], day: &Day, gauge: &Daily) -> Result<
     }
     let mean = |of: &Days| Some(of.days.get(&day.date)?.mean);
     let (measured_c, measured_mg_l) = (mean(&gauge.temperature_c), mean(&gauge.oxygen_mg_l));
-    if measured_c.is_none() && measured_mg_l.is_none() {
-        return Err(Why::NoGauge);
-    }
     let (curve, drawn, release) = Curve::of(site, groups, profile, setting).ok_or(Why::NoWater)?;
     let perturbed = Perturbed::new(site, profile, Some(age_days as f64));
     let spread = perturbed.spread(site, groups, setting, &release);

@@ -1,8 +1,10 @@
 //! Results to text, JSON and CSV, as pure functions.
 
+pub mod annual;
 mod column;
 pub mod csv;
 pub mod json;
+pub mod note;
 pub mod page;
 mod sentence;
 pub mod text;

@@ -63,4 +63,4 @@ pub use price::{Change, Difference, PRICE_MEMBERS, Price, Pricing, prices};
 pub use run::{Choosing, Ended, Run, SeasonDay, Setup, passed, run};
 pub use skies::{Skies, Sky};
 pub use step::{Forcing, Inflow, MOST_OPEN, Stepped, Unbalanced, day, part_of_day};
-pub use tally::{Score, TargetTally, tallies};
+pub use tally::{Score, TargetTally, is_in_degrees, lost, tallies};

@@ -112,14 +112,14 @@ impl Score {
 }
 
 /// Days of the plan that a season does not reach.
-pub(super) fn lost(setup: &Setup, run: &Run) -> u32 {
+pub fn lost(setup: &Setup, run: &Run) -> u32 {
     let planned = setup.plan.days.last().map_or(0, |last| (last.date - setup.begins).num_days() + 1);
     let lost = planned.saturating_sub(i64::try_from(run.days.len()).unwrap_or(i64::MAX)).max(0);
     u32::try_from(lost).unwrap_or(u32::MAX)
 }
 
 /// Whether a rule of a statistic is missed by degrees: not by days, and not by a sum over days.
-fn is_in_degrees(statistic: Statistic) -> bool {
+pub fn is_in_degrees(statistic: Statistic) -> bool {
     !statistic.is_sum() && !matches!(statistic, Statistic::DaysAbove(_) | Statistic::ShareOfDays(_))
 }
 

@@ -8,6 +8,7 @@ mod check;
 mod learned;
 mod levels;
 mod limits;
+mod order_texts;
 mod outlet;
 mod pool;
 mod raw;
@@ -29,6 +30,7 @@ pub use levels::level_groups;
 pub use limits::{
     Avoid, Avoided, Bins, Block, Crew, GenerationLost, Layer, Limits, Outage, Reserved, ShareRule, Undrawn,
 };
+pub use order_texts::{HoldPoint, OrderTexts, RawOrder};
 pub use outlet::{Kind, Leakage, OpenPart, Opens, Outlet, Position, SAME_OPENING, Shape};
 pub use pool::{Pool, RawRow, WidthSource};
 pub use raw::{
@@ -273,6 +275,8 @@ pub struct Site {
     pub casts: Vec<ListedCast>,
     /// How the season ahead is looked at.
     pub season: SeasonInputs,
+    /// Texts of a change order, and how its moves are made.
+    pub order: OrderTexts,
     /// Invented data.
     pub demonstration: bool,
 }

@@ -5,7 +5,7 @@ use crate::units::Folder;
 
 use super::{
     BandInputs, Bins, Block, CastChecks, Chemistry, Crew, GenerationLost, Leakage, ListedCast, Opens,
-    Position, RawLearned, RawRiver, RawRow, RawSeason, WidthSource,
+    Position, RawLearned, RawOrder, RawRiver, RawRow, RawSeason, WidthSource,
 };
 
 /// Pool as read.
@@ -341,6 +341,8 @@ pub struct Raw {
     pub casts: Vec<ListedCast>,
     /// How the season ahead is looked at.
     pub season: RawSeason,
+    /// Texts of a change order.
+    pub order: RawOrder,
     /// Invented data.
     pub demonstration: bool,
 }

@@ -143,7 +143,7 @@ fn judged_now(
 }
 
 /// Whether two settings are one: the same gates, as far open, with the same flows.
-fn same(a: &Setting, b: &Setting) -> bool {
+pub(super) fn same(a: &Setting, b: &Setting) -> bool {
     let gates = |s: &Setting| {
         let mut gates: Vec<(usize, u64, u64)> =
             s.gates.iter().map(|g| (g.outlet, g.opening.to_bits(), g.flow_m3s.to_bits())).collect();

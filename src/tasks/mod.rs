@@ -31,6 +31,7 @@ mod mix;
 pub mod note;
 mod pool;
 pub mod rank;
+pub mod report;
 pub mod river;
 pub mod season;
 mod setting;
@@ -148,6 +149,8 @@ pub struct Context {
     pub said: Vec<Problem>,
     /// What was decided at the site.
     pub log: Arc<ReadLog>,
+    /// What is taken as set now instead of what the log and the site file say.
+    set_before: Option<Arc<Given>>,
     /// The cast's bytes.
     source: Source,
 }
@@ -198,7 +201,20 @@ impl Context {
         let fingerprint = fingerprint(&folder, &sources, &log);
         let conditions = folder.conditions();
         profile.flags.extend(apart::tailwater(&folder.site, &conditions, &profile));
-        Self { folder, profile, on, on_from, age_days, fingerprint, system, conditions, said, log, source }
+        Self {
+            folder,
+            profile,
+            on,
+            on_from,
+            age_days,
+            fingerprint,
+            system,
+            conditions,
+            said,
+            log,
+            set_before: None,
+            source,
+        }
     }
 }
 

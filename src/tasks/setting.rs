@@ -3,6 +3,7 @@
 use crate::intake::{self, ASSUMED_DISCHARGE};
 use crate::mix::{Asked, Gate, Setting, groups, refusals, resolve};
 use crate::problem::Problem;
+use crate::profile::Profile;
 use crate::site::{SAME_OPENING, Site};
 use crate::units::{Dimension, say};
 
@@ -92,6 +93,13 @@ pub fn given(context: &Context, given: &Given) -> Result<Understood, Failure> {
     let setting = resolve(site, &context.profile.column, &groups(site), &asked, pool_m);
     let problems = refusals(site, &setting, pool_m);
     if problems.is_empty() { Ok(Understood { setting, notes }) } else { refused(problems) }
+}
+
+/// The flows of gates as they once stood, under the pool and on the water of a cast: whatever limit stood against it.
+pub(super) fn as_it_was(site: &Site, profile: &Profile, gates: &[Gate]) -> Setting {
+    let mut asked = Asked { direct: gates.to_vec(), ..Asked::default() };
+    spill(site, profile.pool_m, &mut asked);
+    resolve(site, &profile.column, &groups(site), &asked, profile.pool_m)
 }
 
 /// Totals of the wells, once it is sure that each gate and each well is set in one way.

@@ -1,17 +1,45 @@
 //! Small things done on disk, one after the other on a thread of their own: a slow disk must not hold the screens.
 
+use std::ops::ControlFlow;
 use std::panic::{AssertUnwindSafe, catch_unwind};
 use std::sync::mpsc::{Sender, channel};
 use std::thread::{self, JoinHandle};
 use std::time::{Duration, Instant};
 
-use crate::problem::Problem;
+use chrono::{DateTime, Utc};
 
+use crate::files::atomic;
+use crate::problem::Problem;
+use crate::tasks::log::{decide, event};
+
+use super::model::{Entry, EntryOf, Saved};
 use super::update::Event;
 
 /// Longest wait at the end for what is still to be written, and how often it is looked at (choices).
 const LAST: Duration = Duration::from_secs(2);
 const LOOK: Duration = Duration::from_millis(5);
+
+/// Writes something to the log.
+pub fn log(entry: &Entry, clock: DateTime<Utc>) -> Event {
+    let context = &entry.context;
+    let logged = match &entry.what {
+        EntryOf::Decision(gates, asked) => {
+            decide(context, &EntryOf::decision(gates, asked), clock, &|_| ControlFlow::Continue(()))
+        }
+        EntryOf::Event(asked) => event(context, asked, clock),
+    };
+    Event::Logged(logged.map(Box::new))
+}
+
+/// Saves something in a file, whole or not at all; one that is there gives way only where it is to.
+pub fn save(saved: Saved) -> Event {
+    let made = saved.path.parent().map_or(Ok(()), atomic::folder);
+    let written = made.and_then(|()| {
+        let bytes = saved.text.as_bytes();
+        if saved.replace { atomic::write(&saved.path, bytes) } else { atomic::create(&saved.path, bytes) }
+    });
+    Event::Saved(Box::new(saved), written.err())
+}
 
 type Errand = Box<dyn FnOnce() -> Option<Event> + Send>;
 

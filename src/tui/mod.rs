@@ -12,6 +12,7 @@ mod update;
 mod view;
 mod work;
 
+pub use errands::{log, save};
 pub use keys::{Action, Binding, Place, TABLE};
 pub use look::{Look, Role, Symbols, Theme};
 pub use run::{run, sites, start};

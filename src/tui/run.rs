@@ -17,7 +17,7 @@ use crate::problem::Problem;
 use crate::tasks::{self, Asked};
 use crate::units::System;
 
-use super::errands::Errands;
+use super::errands::{self, Errands};
 use super::likes::Kept;
 use super::model::{Choice, Message, Model, Stage};
 use super::terminal::{self, Taken};
@@ -80,6 +80,8 @@ fn on_terminal(asked: Asked) -> io::Result<()> {
         down: worker(&send),
         ahead: worker(&send),
         needed: worker(&send),
+        past: worker(&send),
+        note: worker(&send),
         errands: {
             let send = send.clone();
             Errands::start(move |event| _ = send.send(Arrived::Event(event)))
@@ -168,6 +170,8 @@ struct Outside {
     down: Worker,
     ahead: Worker,
     needed: Worker,
+    past: Worker,
+    note: Worker,
     errands: Errands,
     kept: Kept,
     watched: Arc<Mutex<Option<Seen>>>,
@@ -194,6 +198,8 @@ impl Outside {
                 let words = self.kept.words(likes);
                 self.errands.run(move || settings::save(&words).err().map(Event::Said));
             }
+            Effect::Log(entry) => self.errands.run(move || Some(errands::log(&entry, Utc::now()))),
+            Effect::Save(saved) => self.errands.run(move || Some(errands::save(saved))),
             Effect::Quit => return Ok(true),
             Effect::Suspend => {}
         }
@@ -208,6 +214,8 @@ impl Outside {
             Lane::Down => &self.down,
             Lane::Ahead => &self.ahead,
             Lane::Needed => &self.needed,
+            Lane::Past => &self.past,
+            Lane::Note => &self.note,
         }
     }
 

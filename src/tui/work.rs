@@ -12,6 +12,8 @@ use chrono::{DateTime, NaiveDate, Utc};
 
 use crate::files::folder::{Stamps, stamps};
 use crate::problem::Problem;
+use crate::tasks::log::past;
+use crate::tasks::note::note;
 use crate::tasks::rank::{RankAnswer, RankAsked, Shown, rank};
 use crate::tasks::river::downstream;
 use crate::tasks::season::{SeasonAsked, needed, prices, season};
@@ -21,7 +23,9 @@ use crate::tasks::{
 };
 use crate::units::System;
 
-use super::model::{Ahead, Downstream, Left, Priced, SeasonQuestion, asked};
+use super::model::{
+    Ahead, AsTyped, Downstream, Left, NoteQuestion, Noted, Passed, Priced, SeasonQuestion, asked,
+};
 
 /// Who computes: what answers a key, or what takes longer.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -38,6 +42,10 @@ pub enum Lane {
     Ahead,
     /// The cold water needed on a date.
     Needed,
+    /// What happened.
+    Past,
+    /// Change order and agency note.
+    Note,
 }
 
 /// What settings are computed on.
@@ -96,6 +104,10 @@ pub enum Work {
         /// Plan and case.
         asked: SeasonAsked,
     },
+    /// What happened, under what is changed of what that depends on.
+    Past(Arc<Context>, Changed),
+    /// Change order and agency note.
+    Note(Box<NoteQuestion>),
 }
 
 /// What settings are computed on.
@@ -144,6 +156,10 @@ pub enum Done {
     Needed(Result<Box<Left>, Failure>),
     /// The price of mixes.
     Priced(Result<Box<Priced>, Failure>),
+    /// What happened.
+    Passed(Result<Box<Passed>, Failure>),
+    /// The note.
+    Noted(Result<Box<Noted>, Failure>),
 }
 
 impl Work {
@@ -156,6 +172,8 @@ impl Work {
             Self::River { .. } => Lane::Down,
             Self::Season(..) | Self::Prices { .. } => Lane::Ahead,
             Self::Needed(..) => Lane::Needed,
+            Self::Past(..) => Lane::Past,
+            Self::Note(..) => Lane::Note,
         }
     }
 
@@ -204,6 +222,19 @@ impl Work {
                 prices(&context, &ranking, &asked, progress)
                     .map(|prices| Box::new(Priced { context, asked, prices })),
             ),
+            Self::Past(base, changed) => Done::Passed(base.changed(&changed).and_then(|context| {
+                let past = past(&context, progress)?;
+                Ok(Box::new(Passed { base, changed, context: Arc::new(context), past }))
+            })),
+            Self::Note(question) => {
+                Done::Noted(question.base.changed(&question.changed).and_then(|mut context| {
+                    context.system = question.system;
+                    let given = question.candidate.as_ref();
+                    let gates = given.map(|given| AsTyped::of(context.site(), given)).unwrap_or_default();
+                    let answer = note(&context, &question.asked(&gates), progress)?;
+                    Ok(Box::new(Noted::new(*question, Arc::new(context), answer)))
+                }))
+            }
         }
     }
 
@@ -218,6 +249,8 @@ impl Work {
             Self::Season(..) => |failure| Done::Ahead(Err(failure)),
             Self::Needed(..) => |failure| Done::Needed(Err(failure)),
             Self::Prices { .. } => |failure| Done::Priced(Err(failure)),
+            Self::Past(..) => |failure| Done::Passed(Err(failure)),
+            Self::Note(..) => |failure| Done::Noted(Err(failure)),
         }
     }
 }

@@ -17,7 +17,7 @@ mod tests;
 pub use datum::{Datum, DatumError};
 pub use folder::Folder;
 pub use parse::{UnitError, parse};
-pub use say::in_system;
+pub use say::{in_both, in_system};
 pub use show::{System, figure, show};
 pub use unit::{DAY_S, Dimension, Unit};
 

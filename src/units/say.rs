@@ -4,7 +4,7 @@
 //! figure enters the text as a mark holding its full SI value, and [`in_system`] puts `60.00 m` or `196.9 ft`
 //! in its place.
 
-use std::fmt;
+use std::fmt::{self, Write as _};
 
 use super::show::{System, show};
 use super::unit::Dimension;
@@ -25,6 +25,13 @@ const LETTERS: [(char, Dimension); 8] = [
     ('T', Dimension::Temperature),
     ('D', Dimension::TemperatureDifference),
 ];
+
+/// A piece of a text.
+#[derive(Debug, Clone, Copy)]
+enum Piece<'a> {
+    Text(&'a str),
+    Said(Said),
+}
 
 /// A quantity to be written into a sentence; its `Display` is the mark, not the figure.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -91,6 +98,7 @@ impl Said {
     fn read(mark: &str) -> Option<Self> {
         let mut chars = mark.chars();
         let (letter, decimals, sign) = (chars.next()?, chars.next()?.to_digit(10)?, chars.next()?);
+        LETTERS.iter().find(|(known, _)| *known == letter)?;
         Some(Self {
             letter,
             value_si: chars.as_str().parse().ok()?,
@@ -109,6 +117,14 @@ impl Said {
         let figure = show(self.value_si, dimension, system, self.decimals_in(dimension, system));
         let above_zero = !figure.starts_with('-') && figure.contains(|c| matches!(c, '1'..='9'));
         Some(if self.signed && above_zero { format!("+{figure}") } else { figure })
+    }
+
+    /// The figure, or that of a range which it begins.
+    fn up_to(self, end: Option<Self>, system: System) -> String {
+        let figure = self.shown(system).unwrap_or_default();
+        let Some(end) = end else { return figure };
+        let bare = figure.rsplit_once(' ').map_or(figure.as_str(), |(bare, _)| bare);
+        format!("{bare} to {}", end.shown(system).unwrap_or_default())
     }
 
     /// Decimals that keep about the precision of the SI figure (choice).
@@ -146,18 +162,63 @@ impl fmt::Display for Said {
 /// a user's file, stays as it is: the result is no safer for a terminal than the text was.
 pub fn in_system(text: &str, system: System) -> String {
     let mut out = String::with_capacity(text.len());
-    for piece in text.split_inclusive(CLOSE) {
-        let said = piece
-            .rsplit_once(OPEN)
-            .and_then(|(before, mark)| Some((before, Said::read(mark.strip_suffix(CLOSE)?)?.shown(system)?)));
-        match said {
-            Some((before, figure)) => {
-                out.push_str(before);
-                out.push_str(&figure);
-            }
-            None => out.push_str(piece),
+    for piece in pieces(text) {
+        match piece {
+            Piece::Text(text) => out.push_str(text),
+            Piece::Said(said) => out.push_str(&said.shown(system).unwrap_or_default()),
         }
     }
+    out
+}
+
+/// A text with every quantity in it in both systems, one of them first: `54.6 F (12.6 C)`. Two of a kind with nothing
+/// but `to` between them share their units: `53.5 to 56.1 F (11.9 to 13.4 C)`.
+pub fn in_both(text: &str, first: System) -> String {
+    let second = match first {
+        System::Us => System::Si,
+        System::Si => System::Us,
+    };
+    let pieces = pieces(text);
+    let mut out = String::with_capacity(2 * text.len());
+    let mut rest = &pieces[..];
+    while let [piece, after @ ..] = rest {
+        rest = after;
+        let said = match piece {
+            Piece::Text(text) => {
+                out.push_str(text);
+                continue;
+            }
+            Piece::Said(said) => *said,
+        };
+        let end = match after {
+            [Piece::Text(" to "), Piece::Said(end), after @ ..] if end.letter == said.letter => {
+                rest = after;
+                Some(*end)
+            }
+            _ => None,
+        };
+        let [one, other] = [first, second].map(|system| said.up_to(end, system));
+        _ = write!(out, "{one} ({other})");
+    }
+    out
+}
+
+/// A text cut into quantities and what stands between them.
+fn pieces(text: &str) -> Vec<Piece<'_>> {
+    let mut out = Vec::new();
+    let mut plain = 0;
+    let mut at = 0;
+    while let Some(close) = text.get(at..).and_then(|rest| rest.find(CLOSE)).map(|found| at + found) {
+        let open = text.get(at..close).and_then(|piece| piece.rfind(OPEN)).map(|found| at + found);
+        let mark = |open: usize| text.get(open + OPEN.len_utf8()..close).and_then(Said::read);
+        at = close + CLOSE.len_utf8();
+        if let Some((open, said)) = open.and_then(|open| Some((open, mark(open)?))) {
+            out.extend(text.get(plain..open).filter(|t| !t.is_empty()).map(Piece::Text));
+            out.push(Piece::Said(said));
+            plain = at;
+        }
+    }
+    out.extend(text.get(plain..).filter(|t| !t.is_empty()).map(Piece::Text));
     out
 }
 
@@ -211,7 +272,8 @@ mod tests {
 
         #[test]
         fn law_text_without_a_mark_is_unchanged(text in ".*") {
-            prop_assert_eq!(in_system(&text, System::Us), text);
+            prop_assert_eq!(in_system(&text, System::Us), text.clone());
+            prop_assert_eq!(in_both(&text, System::Us), text);
         }
     }
 
@@ -237,6 +299,28 @@ mod tests {
         );
         let small = format!("{} {} {}", m2(1000.0, 0), m(0.5, 0), c(9.0, 0));
         assert_eq!(in_system(&small, System::Us), "0.25 acre 2 ft 48 F");
+    }
+
+    #[test]
+    fn scenario_one_sentence_in_both_systems_at_once() {
+        let text = format!(
+            "{} [{} to {}], {} then {}",
+            c(12.6, 1),
+            c(11.9, 1),
+            c(13.4, 1),
+            m3s(34.0, 1),
+            m(-2.0, 1)
+        );
+        assert_eq!(
+            in_both(&text, System::Us),
+            "54.7 F (12.6 C) [53.4 to 56.1 F (11.9 to 13.4 C)], 1,201 cfs (34.0 m3/s) then -7 ft (-2.0 m)"
+        );
+        assert_eq!(
+            in_both(&format!("{} to {}", c(1.0, 0), m(1.0, 1)), System::Si),
+            "1 C (34 F) to 1.0 m (3 ft)"
+        );
+        let three = format!("{} to {} to {}", dc(1.0, 0), dc(2.0, 0), dc(3.0, 0).signed());
+        assert_eq!(in_both(&three, System::Si), "1 to 2 C (2 to 4 F) to +3 C (+5 F)");
     }
 
     #[test]

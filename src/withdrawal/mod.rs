@@ -51,7 +51,7 @@ pub struct Sink {
 }
 
 /// Less than this is no flow, m3/s (choice): its square would be lost in the search for a limit.
-const LEAST_FLOW_M3S: f64 = 1e-60;
+pub const LEAST_FLOW_M3S: f64 = 1e-60;
 
 /// The zone of one sink.
 ///

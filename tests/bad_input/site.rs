@@ -7,7 +7,7 @@ use std::path::Path;
 use gatemix::files::site::site;
 use gatemix::problem::Weight;
 
-use super::{aeration, learned, limits, river, season, targets};
+use super::{aeration, learned, limits, order_texts, river, season, targets};
 
 pub(super) const SOUND: &str = r#"name: Test Dam (invented)
 units: { length: m, area: m2, volume: m3, flow: m3/s, temperature: C }
@@ -277,6 +277,7 @@ fn law_every_kind_of_problem_a_site_can_have_has_a_case() {
     }
     let flagged = FLAGGED.iter().chain(aeration::FLAGGED).chain(river::FLAGGED).chain(river::FLAGGED_MONTHLY);
     let cases: BTreeSet<&str> = all()
+        .chain(order_texts::REFUSED)
         .chain(learned::REFUSED)
         .chain(season::REFUSED)
         .chain(season::FLAGGED)

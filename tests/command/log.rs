@@ -142,7 +142,7 @@ fn scenario_what_cannot_be_logged_is_refused_and_nothing_is_written() {
         (&["log", site, "--decide", "--by", "b", "--why", "w", "--set", "N1=9000"], 3, "capacity"),
         (&["log", site, "--by", "b"], 2, "--by goes with --decide"),
         (&["log", site, "--set", "N1=20"], 2, "--set goes with --decide"),
-        (&["log", "ashlar", "--decide", "--by", "b", "--why", "w"], 3, "it has no log"),
+        (&["log", "ashlar", "--decide", "--by", "b", "--why", "w"], 3, "it has no log to write"),
     ];
     for (arguments, code, words) in refused {
         let out = run(arguments);

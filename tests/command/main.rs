@@ -18,6 +18,8 @@ mod log;
 mod log_kept;
 mod loggers;
 mod new;
+mod note;
+mod past;
 mod prices;
 mod rank;
 mod rank_answers;

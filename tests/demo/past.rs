@@ -12,7 +12,7 @@ pub(crate) struct PastDay {
     pub(crate) inflow_m3s: f64,
     pub(crate) inflow: Water,
     /// Gates by their place in the tower, from the uppermost, and their flows.
-    pub(crate) gates: [(usize, f64); 2],
+    pub(crate) gates: Vec<(usize, f64)>,
 }
 
 /// Days one after the other.
@@ -53,7 +53,7 @@ impl Past {
             format!("# {of}: what was set, invented days of an invented place.\ndate,T1,T2,T3,T4\n");
         for day in &self.days {
             let mut flows = [0.0; GATES];
-            for (gate, flow_m3s) in day.gates {
+            for &(gate, flow_m3s) in &day.gates {
                 flows[gate] += flow_m3s;
             }
             let cells = flows.map(|q| if q < SHUT_M3S { String::new() } else { format!("{q:.2}") });

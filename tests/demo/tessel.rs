@@ -1,14 +1,17 @@
 //! Tessel Dam on the Varr Water, both invented: two years of weather, inflow and operation, and the casts taken from
-//! the tower meanwhile; of the last spring also what came in and what was set.
+//! the tower meanwhile; of the last spring also what came in, what was decided and set, and what the river below recorded.
 //!
 //! The pool is the column of the other sites with a clear upland pool's nature; what drives it is harmonics with noise from
 //! a fixed seed, and the weather file the air that goes with it. Every number is a choice for a supply dam at 46 degrees north and 350 m.
 
+mod gauge;
+pub(crate) mod log;
+mod meetings;
 mod weather;
 
 use std::collections::BTreeMap;
 
-use chrono::{NaiveDate, NaiveDateTime, NaiveTime};
+use chrono::{NaiveDate, NaiveDateTime, NaiveTime, TimeDelta};
 use rand_pcg::Pcg32;
 use serde_yaml::Value;
 
@@ -18,6 +21,10 @@ use super::past::{Past, PastDay};
 use super::season::{bell, fading, through, yearly};
 use super::sonde::{Cast, sound, times};
 use super::water::oxygen_saturation_mg_l;
+use gauge::Gauge;
+pub(crate) use gauge::TOO_WARM_C;
+pub(crate) use meetings::MADE_LATE;
+use meetings::at;
 use weather::Weather;
 
 /// The column runs from here, mixed as pools are in November.
@@ -25,16 +32,24 @@ const FIRST_DAY: (i32, u32, u32) = (2024, 11, 20);
 const STEPS_A_DAY: u32 = 6;
 const NATURE: Nature = Nature { zone_m: 3.0, light_loss_1_m: 0.45, demand: 1.1 };
 /// Times of all casts, local standard time, the newest last.
-const TAKEN: [&str; 10] = [
+const TAKEN: [&str; 18] = [
     "2025-05-13T09:30",
     "2025-06-24T09:50",
     "2025-08-05T09:40",
     "2025-09-09T10:10",
     "2025-10-14T10:20",
     "2025-11-18T10:45",
-    "2026-04-14T10:00",
+    "2026-04-07T10:00",
+    "2026-04-21T09:40",
+    "2026-04-28T09:25",
+    "2026-05-05T09:55",
+    "2026-05-12T10:05",
     "2026-05-19T09:35",
-    "2026-06-09T09:45",
+    "2026-05-26T09:40",
+    "2026-06-02T10:10",
+    "2026-06-09T09:30",
+    "2026-06-16T09:45",
+    "2026-06-23T09:50",
     "2026-06-30T09:20",
 ];
 /// The days since the seventh cast, of this year, are told by a plan and a schedule of what has been.
@@ -42,6 +57,9 @@ const PAST_FROM: usize = 6;
 const OF: &str = "Tessel Dam on the Varr Water";
 /// Water over the centre of a gate with which it draws no air, m.
 const LEAST_OVER_GATE_M: f64 = 3.7;
+/// Share by which a day's release strays from what was decided, as a standard deviation.
+const DRIFT: f64 = 0.02;
+const HOURS: i64 = 24;
 
 /// What the maker needs to know of the site; read from its own file, so that the two cannot part.
 struct Site {
@@ -67,37 +85,64 @@ impl Site {
     }
 }
 
-/// Every file beside `site.yaml` and the plans, by its path in the folder.
-pub(crate) fn files(text: &str) -> BTreeMap<String, String> {
-    let (casts, spring, air) = years(&Site::read(text));
+/// Every file beside `site.yaml` and the plans but the log, by its path in the folder, and the pool at the time of each
+/// meeting, m.
+pub(crate) fn files(text: &str) -> (BTreeMap<String, String>, Vec<f64>) {
+    let Years { casts, spring, air, gauge, pools_m } = years(&Site::read(text));
+    let newest = casts[casts.len() - 1].taken;
     let casts = casts.iter().map(|cast| cast.file(OF));
-    casts.chain([spring.plan(OF), spring.schedule(OF), air.file(OF)]).collect()
+    let files =
+        casts.chain([spring.plan(OF), spring.schedule(OF), air.file(OF), gauge.file(OF, newest)]).collect();
+    (files, pools_m)
 }
 
-fn years(site: &Site) -> (Vec<Cast>, Past, Weather) {
+/// All that happened.
+struct Years {
+    casts: Vec<Cast>,
+    spring: Past,
+    air: Weather,
+    gauge: Gauge,
+    pools_m: Vec<f64>,
+}
+
+fn years(site: &Site) -> Years {
     let times: Vec<NaiveDateTime> = times(&TAKEN);
     let last = times[times.len() - 1].date();
     let (y, m, d) = FIRST_DAY;
     let mut day = NaiveDate::from_ymd_opt(y, m, d).unwrap();
-    // two streams, so that one more cast leaves the weather as it is
-    let (mut weather, mut sensor) = (Pcg32::new(352, 1), Pcg32::new(352, 2));
+    // streams of their own, so that one more cast leaves the weather as it is
+    let [mut weather, mut sensor, mut meter] = [1, 2, 5].map(|stream| Pcg32::new(352, stream));
     let mut noise = [0.0; 3];
     let autumn = Water { temperature_c: 9.0, oxygen_mg_l: 10.4, conductance_us_cm: 210.0 };
     let mut column = Column::mixed(&site.basin, 0.0, rule_curve_m(day), autumn).with(NATURE);
     let (mut casts, mut spring, mut air) = (Vec::new(), Past::default(), Weather::new());
+    let (mut gauge, mut pools_m) = (Gauge::new(), Vec::new());
     while day <= last {
         for (value, kept) in noise.iter_mut().zip([0.8, 0.4, 0.85]) {
             *value = fading(&mut weather, kept, *value);
         }
         let forcing = operate(site, &column, day, noise);
-        if day >= times[PAST_FROM].date() {
-            spring.days.push(passed(site, day, &forcing));
-        }
         air.keep(day, &forcing);
+        let drift = 1.0 + DRIFT * fading(&mut meter, 0.0, 0.0);
         let midnight = day.and_time(NaiveTime::MIN);
         let step_s = 86400.0 / f64::from(STEPS_A_DAY);
+        let mut book = Vec::new();
         for step in 0..STEPS_A_DAY {
             let begins_s = f64::from(step) * step_s;
+            let moment = midnight + TimeDelta::seconds(begins_s as i64);
+            let mut forcing = Forcing { ..forcing };
+            if let Some((decided, made)) = at(moment) {
+                if decided.from() == moment {
+                    pools_m.push(column.pool_m());
+                }
+                let release_m3s = drift * decided.release_m3s;
+                forcing.releases = decided.flows_m3s(&site.gates_m, release_m3s);
+                book.push(forcing.releases);
+                forcing.releases = made.flows_m3s(&site.gates_m, release_m3s);
+                gauge.read(moment, HOURS / i64::from(STEPS_A_DAY), given(&column, &forcing));
+            } else {
+                book.push(forcing.releases);
+            }
             let mut gone_s = 0.0;
             // the sonde finds the pool as it is at its hour
             for &taken in &times {
@@ -110,22 +155,31 @@ fn years(site: &Site) -> (Vec<Cast>, Past, Weather) {
             }
             column.step(&forcing, step_s - gone_s);
         }
+        if day >= times[PAST_FROM].date() {
+            spring.days.push(passed(site, day, &forcing, &book));
+        }
         day = day.succ_opt().unwrap();
     }
-    (casts, spring, air)
+    Years { casts, spring, air, gauge, pools_m }
 }
 
-/// One day as the dam's book has it: the two gates by their place among the tower's, the uppermost first.
-fn passed(site: &Site, day: NaiveDate, forcing: &Forcing) -> PastDay {
-    let place = |(gate_m, flow_m3s): (f64, f64)| {
-        let gate = site.gates_m.iter().position(|&z_m| (z_m - gate_m).abs() < 1e-9);
-        (gate.unwrap(), flow_m3s)
+/// The water that the gates give as they stand.
+fn given(column: &Column, forcing: &Forcing) -> Water {
+    let [(one_m, one_m3s), (other_m, other_m3s)] = forcing.releases;
+    column.drawn(one_m).blended(column.drawn(other_m), other_m3s / (one_m3s + other_m3s))
+}
+
+/// One day as the dam's book has it: the mean flow of each gate, by its place among the tower's, the uppermost first.
+fn passed(site: &Site, day: NaiveDate, forcing: &Forcing, book: &[[(f64, f64); 2]]) -> PastDay {
+    let mean = |&gate_m: &f64| {
+        let of = book.iter().flatten().filter(|set| (set.0 - gate_m).abs() < 1e-9);
+        of.map(|set| set.1).sum::<f64>() / book.len() as f64
     };
     PastDay {
         day,
         inflow_m3s: forcing.inflow_m3s,
         inflow: forcing.inflow,
-        gates: forcing.releases.map(place),
+        gates: site.gates_m.iter().map(mean).enumerate().collect(),
     }
 }
 

@@ -6,7 +6,9 @@ use std::path::Path;
 
 use chrono::{DateTime, Utc};
 use crossterm::event::{KeyCode, KeyEvent, KeyModifiers};
-use gatemix::tasks::{self, Asked};
+use gatemix::problem::Problem;
+use gatemix::tasks::log::NotLogged;
+use gatemix::tasks::{self, Asked, Failure};
 use gatemix::tui::model::{Choice, Likes, Model, Session};
 use gatemix::tui::{self, Done, Effect, Event, Lane, Look, Sent, Symbols, Theme, Work, draw_model};
 use ratatui::buffer::Buffer;
@@ -84,6 +86,17 @@ impl Driver {
                     let made = tasks::new(Path::new(&folder), system).map(|_| folder);
                     self.send(Event::Made(made));
                 }
+                // nothing is written in a storm
+                Effect::Log(_) if self.listed.is_some() => {
+                    self.send(Event::Logged(Err(NotLogged::Task(Failure::Stopped))));
+                }
+                Effect::Save(saved) if self.listed.is_some() => {
+                    let there =
+                        (!saved.replace).then(|| Problem::refused("exists", "it is there", "name another"));
+                    self.send(Event::Saved(Box::new(saved), there));
+                }
+                Effect::Log(entry) => self.send(tui::log(&entry, clock())),
+                Effect::Save(saved) => self.send(tui::save(saved)),
                 Effect::Copy(text) => self.copied.push(text),
                 Effect::Keep(likes) => self.kept.push(likes),
                 Effect::Quit => self.quit = true,
@@ -114,7 +127,8 @@ impl Driver {
     pub(crate) fn settle(&mut self) {
         // the ranking and the river come last: what the others tell may ask for them anew
         let lanes = [Lane::Quick, Lane::Aside, Lane::Long, Lane::Down, Lane::Ahead, Lane::Needed];
-        let next = |d: &mut Self| lanes.into_iter().find_map(|l| d.question(l));
+        let lanes = lanes.into_iter().chain([Lane::Past, Lane::Note]);
+        let next = |d: &mut Self| lanes.clone().find_map(|l| d.question(l));
         while let Some(question) = next(self) {
             self.answer(question);
         }

@@ -11,13 +11,17 @@ mod driver;
 mod held;
 mod kept;
 mod keys;
+mod logged;
+mod noted;
 mod numbers;
 mod prices;
 #[cfg(unix)]
 mod pty;
+mod record;
 mod screens;
 mod seasons;
 mod sites;
 mod storm;
 #[cfg(unix)]
 mod terminal;
+mod turned;

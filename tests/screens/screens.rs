@@ -9,11 +9,11 @@ use gatemix::units::System;
 use ratatui::buffer::Buffer;
 use ratatui::style::{Color, Modifier};
 
-use crate::coming;
 use crate::downstream::{self, river};
 use crate::driver::{Driver, text};
 use crate::held::{doc, hold, stop_at, writing};
 use crate::sites::{CAST, SITE, ground, site, usual, with, without_oxygen};
+use crate::{coming, noted, record};
 
 pub(crate) type Size = (u16, u16);
 pub(crate) const NORMAL: Size = (80, 24);
@@ -139,7 +139,13 @@ fn unchanged_every_screen_is_the_one_in_the_docs() {
     }
     let mut differing = Vec::new();
     let mut names = BTreeSet::from(["README.md".to_owned()]);
-    for scene in scenes().into_iter().chain(downstream::scenes()).chain(coming::scenes()) {
+    for scene in scenes()
+        .into_iter()
+        .chain(downstream::scenes())
+        .chain(coming::scenes())
+        .chain(record::scenes())
+        .chain(noted::scenes())
+    {
         let mut driver = (scene.driver)();
         if scene.name == "ascii" {
             driver.symbols(Symbols::Ascii);

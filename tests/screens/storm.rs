@@ -11,9 +11,9 @@ use rand_pcg::rand_core::{Rng, SeedableRng};
 use ratatui::buffer::Buffer;
 use ratatui::layout::Rect;
 
-use crate::ahead;
 use crate::driver::{Driver, key};
 use crate::sites::{CAST, SITE, ground, site, usual, with};
+use crate::{ahead, record};
 
 /// Events of the whole storm.
 const EVENTS: usize = 100_000;
@@ -112,9 +112,21 @@ fn holds(driver: &Driver) {
             let days = session.season_shown().map_or(&[][..], |s| &s.run.run.days);
             let read = session.season.day;
             assert!(read.is_none_or(|day| days.is_empty() || days.iter().any(|d| d.date == day)), "{read:?}");
+            let (past, span) = (session.past_days(), session.past_span());
+            assert!(
+                span.end <= past.len() && session.past_read().is_none_or(|at| span.contains(&at)),
+                "{span:?}"
+            );
+            let decisions = session.decisions().len();
+            assert!(session.decision_at().is_none_or(|at| at < decisions), "of {decisions}");
+            let sheets = session.noted.as_ref().map_or(0, |noted| noted.sheets.len());
+            assert!(session.note.sheet < sheets.max(1), "{} of {sheets}", session.note.sheet);
             let mixes = session.ranked.as_ref().map_or(0, |r| r.answer.mixes.len());
             assert!(session.rank.at < mixes.max(1), "{} of {mixes}", session.rank.at);
         }
+    }
+    if let Some(Over::Form(form)) = &driver.model.over {
+        assert!(form.at < form.fields.len());
     }
     if let Some(Over::Order(at) | Over::Drill(at) | Over::Settings(at)) = driver.model.over {
         assert!(at < 100);
@@ -176,8 +188,16 @@ fn storm(seed: u64, events: usize) {
         if dice.below(ANSWERED) == 0 && driver.waits(Lane::Needed) {
             ahead::answer_left(&mut driver);
         }
-        let lanes =
-            [(Lane::Quick, ANSWERED), (Lane::Aside, ANSWERED), (Lane::Down, ANSWERED), (Lane::Long, RANKED)];
+        if dice.below(ANSWERED) == 0 && driver.waits(Lane::Past) {
+            record::answer(&mut driver);
+        }
+        let lanes = [
+            (Lane::Note, RANKED),
+            (Lane::Quick, ANSWERED),
+            (Lane::Aside, ANSWERED),
+            (Lane::Down, ANSWERED),
+            (Lane::Long, RANKED),
+        ];
         for (lane, one_in) in lanes {
             if dice.below(one_in) != 0 {
                 continue;

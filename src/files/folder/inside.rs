@@ -30,9 +30,14 @@ pub fn demonstration_files() -> Vec<(PathBuf, &'static [u8])> {
     out
 }
 
+/// The bytes of one file of them.
+pub(super) fn bytes_inside(file: &str) -> Option<&'static [u8]> {
+    Some(DEMONSTRATIONS.get_file(file)?.contents())
+}
+
 /// One file of them, read as if it were on disk.
 pub(super) fn inside(file: &str) -> Option<Result<Source, Problem>> {
-    let contents = DEMONSTRATIONS.get_file(file)?.contents();
+    let contents = bytes_inside(file)?;
     let format = if is_csv(Path::new(file)) { Format::Csv } else { Format::Yaml };
     Some(text::read_from(file, contents, format))
 }

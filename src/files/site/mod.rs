@@ -2,6 +2,7 @@
 
 mod learned;
 mod limits;
+mod order_texts;
 mod outlets;
 mod river;
 mod season;
@@ -198,6 +199,7 @@ fn raw_site(map: Map) -> Raw {
         pool_m: read.optional(m, "pool", Dimension::Length),
     });
     within(&map, "season", |m| raw.season = season::season(&read, m));
+    within(&map, "order", |m| raw.order = order_texts::texts(m));
     raw.demonstration = map.optional("demonstration").and_then(|v| v.boolean()).unwrap_or(false);
     map.finish();
     raw

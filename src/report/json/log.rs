@@ -6,8 +6,10 @@ use crate::record::Decided;
 use crate::record::line::{Decision, Event, Line};
 use crate::report::caution;
 use crate::tasks::Context;
-use crate::tasks::log::Logged;
+use crate::tasks::log::{Logged, Past};
 
+use super::applied::{LearnedJson, applied};
+use super::past::PastJson;
 use super::shape::{Head, ProblemJson};
 use super::{head, problem, written};
 
@@ -17,6 +19,9 @@ struct LogJson<'a> {
     head: Head,
     decisions: Vec<DecidedJson<'a>>,
     events: Vec<&'a Event>,
+    /// What the site file applies of the learned.
+    learned: Option<LearnedJson>,
+    past: PastJson,
     problems: Vec<ProblemJson>,
     caution: &'static str,
 }
@@ -40,11 +45,13 @@ struct LoggedJson<'a> {
 }
 
 /// The answer of `log`.
-pub fn log(context: &Context) -> String {
+pub fn log(context: &Context, past: &Past) -> String {
     written(&LogJson {
         head: head(context, &context.fingerprint, &[]),
         decisions: context.log.log.decisions().iter().map(|decided| one(context, decided)).collect(),
         events: context.log.log.events(),
+        learned: applied(context.site()),
+        past: super::past::past(context, past),
         problems: context.log.problems.iter().map(problem).collect(),
         caution: caution(),
     })

@@ -17,6 +17,11 @@ const DECIMALS: usize = 4;
 /// What is applied, and of which days: `bias +0.3 C, of 41 days, 2025-05-01 to 2025-10-31, is applied`; `None` where
 /// nothing was learned.
 pub fn applied(site: &Site, system: System) -> Option<String> {
+    applied_words(site).map(|words| in_system(&words, system))
+}
+
+/// The same, quantities as [`say`](crate::units::say) marks them.
+pub(in crate::report) fn applied_words(site: &Site) -> Option<String> {
     let learned = site.learned()?;
     let mut values = Vec::new();
     values.extend(learned.bias_c.map(|bias_c| format!("bias {}", say::dc(bias_c, 2).signed())));
@@ -29,8 +34,7 @@ pub fn applied(site: &Site, system: System) -> Option<String> {
         values.push("scatter of its own".to_owned());
     }
     let window = learned.window.map_or_else(String::new, |(from, to)| format!(", {from} to {to}"));
-    let words = format!("{}, of {} days{window}, is applied", values.join(", "), learned.n);
-    Some(in_system(&words, system))
+    Some(format!("{}, of {} days{window}, is applied", values.join(", "), learned.n))
 }
 
 /// What is applied, and the release without it; `None` where nothing was learned.

@@ -1,21 +1,29 @@
 //! The log: what was decided, what happened, what was written.
 
+mod learning;
+mod past;
+
 use std::fmt::Write as _;
 
-use crate::problem::harmless;
+use crate::problem::{Problem, harmless};
 use crate::record::Decided;
 use crate::record::line::{Considered, Decision, Event, Expected, Gates, Line};
 use crate::site::Site;
 use crate::tasks::Context;
-use crate::tasks::log::Logged;
+use crate::tasks::log::{Logged, Past};
 use crate::units::System;
 
-use super::{flow, labelled, list, oxygen, temperature, wrapped};
 use crate::report::caution;
 use crate::report::sentence::flags_of;
 
-/// The answer of `log`: every decision and event, the last first.
-pub fn log(context: &Context) -> String {
+use super::{flow, labelled, list, oxygen, temperature, wrapped};
+
+pub use learning::{candidate, learning};
+pub(in crate::report) use past::{apart, count, signed, span};
+pub use past::{hindcast, left_out, level_name, scores, spell, spells, turned};
+
+/// The answer of `log`: every decision and event, the last first; then what happened.
+pub fn log(context: &Context, past: &Past) -> String {
     let (site, system) = (context.site(), context.system);
     let mut out = super::head(context, &context.fingerprint);
     let log = &context.log.log;
@@ -25,15 +33,77 @@ pub fn log(context: &Context) -> String {
         out.push_str(&labelled("Log", words));
     }
     for decided in decisions.iter().rev() {
-        out.push_str(&decision(context, decided));
+        for (label, words) in decision(context, decided) {
+            out.push_str(&labelled(label, &words));
+        }
+        if let Some(turned) = past.decisions.iter().find(|turned| turned.id == decided.id) {
+            for words in self::turned(turned, system) {
+                out.push_str(&labelled("Came", &words));
+            }
+        }
         out.push('\n');
     }
     for event in &events {
         out.push_str(&labelled("Event", &event_words(site, event)));
     }
     out.push('\n');
+    out.push_str(&happened(context, past));
     out.push_str(&list("The log", &flags_of(&context.log.problems), true, system));
     out.push_str(&wrapped(caution(), 0));
+    out
+}
+
+/// What happened, under its headings; nothing where no day is past.
+fn happened(context: &Context, past: &Past) -> String {
+    let (Some(first), Some(last)) = (past.days.first(), past.days.last()) else { return String::new() };
+    let held = past.temperature.all.n.max(past.oxygen.all.n);
+    let words = format!(
+        "What happened, {} to {}: {held} of {} days can be held against the gauge",
+        first.date,
+        last.date,
+        past.days.len()
+    );
+    let mut out = wrapped(&words, 2);
+    for line in scores(context, past) {
+        out.push_str(&line);
+        out.push('\n');
+    }
+    out.push('\n');
+    out.push_str(&section("Left out", indented(left_out(past))));
+    out.push_str(&section("Outside the band", indented(spells(context, past))));
+    out.push_str(&section("The season gone through again", indented(hindcast(context, past))));
+    out.push_str(&section("What the record teaches", indented(learning(context, past))));
+    out.push_str(&section(
+        "What is applied",
+        indented(super::learned::applied(context.site(), context.system).into_iter().collect()),
+    ));
+    if let Some(lines) = super::learned::learned_yaml(context.site(), &past.learning) {
+        out.push_str("For site.yaml, in the place of `learned` where it has one; nothing was written\n");
+        for line in lines.lines() {
+            _ = writeln!(out, "  {}", harmless(line));
+        }
+        out.push('\n');
+    }
+    let notes: Vec<&Problem> = past.notes.iter().collect();
+    out.push_str(&list("Assumed", &notes, false, context.system));
+    out
+}
+
+fn indented(lines: Vec<String>) -> Vec<String> {
+    lines.into_iter().map(|line| format!("  {line}")).collect()
+}
+
+/// Lines under a heading, each wrapped two cells further in than it begins; nothing without lines.
+fn section(heading: &str, lines: Vec<String>) -> String {
+    if lines.is_empty() {
+        return String::new();
+    }
+    let mut out = format!("{heading}\n");
+    for line in lines {
+        let lead = line.len() - line.trim_start().len();
+        out.push_str(&wrapped(&line, lead + 2));
+    }
+    out.push('\n');
     out
 }
 
@@ -50,7 +120,9 @@ pub fn logged(context: &Context, logged: &Logged) -> String {
                 None => format!("decision {}", decision.id),
             };
             out.push_str(&labelled("Logged", &format!("{what}, on the disk in {file}")));
-            out.push_str(&body(site, decision, system));
+            for (label, words) in body(site, decision, system) {
+                out.push_str(&labelled(label, &words));
+            }
         }
         Line::Event(event) => {
             out.push_str(&labelled("Logged", &format!("event {}, on the disk in {file}", event.id)));
@@ -62,20 +134,21 @@ pub fn logged(context: &Context, logged: &Logged) -> String {
     out
 }
 
-fn decision(context: &Context, decided: &Decided) -> String {
-    let (site, system) = (context.site(), context.system);
+/// A decision: its number and standing, then what it says, each with its label.
+pub fn decision(context: &Context, decided: &Decided) -> Vec<(&'static str, String)> {
     let standing = if decided.stands(context.on) { ", set now" } else { "" };
     let amended = match decided.amended {
         0 => String::new(),
         1 => ", amended once".to_owned(),
         times => format!(", amended {times} times"),
     };
-    labelled("Decision", &format!("{}{standing}{amended}", decided.id))
-        + &body(site, decided.decision, system)
+    let mut out = vec![("Decision", format!("{}{standing}{amended}", decided.id))];
+    out.extend(body(context.site(), decided.decision, context.system));
+    out
 }
 
-/// A decision, from whom it is to what is expected.
-fn body(site: &Site, decision: &Decision, system: System) -> String {
+/// What a decision says, from whom it is to what is expected.
+fn body(site: &Site, decision: &Decision, system: System) -> Vec<(&'static str, String)> {
     let time = |t: chrono::DateTime<chrono::FixedOffset>| {
         t.with_timezone(&site.offset).format("%Y-%m-%d %H:%M %:z").to_string()
     };
@@ -86,15 +159,12 @@ fn body(site: &Site, decision: &Decision, system: System) -> String {
     if let Some(trigger) = &decision.trigger {
         _ = write!(from, ", or when {}", harmless(trigger));
     }
-    let mut out = labelled("", &from);
-    out.push_str(&labelled("Why", &harmless(&decision.why)));
-    out.push_str(&labelled("Set", &gates(&decision.chosen, system)));
-    for expected in &decision.expected {
-        out.push_str(&labelled("Expected", &expected_words(expected, system)));
-    }
+    let mut out =
+        vec![("", from), ("Why", harmless(&decision.why)), ("Set", gates(&decision.chosen, system))];
+    out.extend(decision.expected.iter().map(|expected| ("Expected", expected_words(expected, system))));
     if !decision.considered.is_empty() {
         let first: Vec<String> = decision.considered.iter().take(3).map(|c| considered(c, system)).collect();
-        out.push_str(&labelled("Ranked", &first.join("; ")));
+        out.push(("Ranked", first.join("; ")));
     }
     let known = &decision.known;
     let words = format!(
@@ -105,11 +175,12 @@ fn body(site: &Site, decision: &Decision, system: System) -> String {
         harmless(&known.profile),
         harmless(&decision.version)
     );
-    out.push_str(&labelled("Known", &words));
+    out.push(("Known", words));
     out
 }
 
-fn gates(gates: &Gates, system: System) -> String {
+/// Gates with their flows and openings.
+pub fn gates(gates: &Gates, system: System) -> String {
     let one = |(name, &flow_m3s): (&String, &f64)| {
         let open = gates.open.get(name).map_or_else(String::new, |percent| format!(" at {percent:.0}%"));
         format!("{} {}{open}", harmless(name), flow(flow_m3s, system))
@@ -142,7 +213,8 @@ fn considered(mix: &Considered, system: System) -> String {
     format!("{} = {}{outside}", gates(&mix.gates, system), temperature(mix.temperature_c, system))
 }
 
-fn event_words(site: &Site, event: &Event) -> String {
+/// An event in one line.
+pub fn event_words(site: &Site, event: &Event) -> String {
     let from = event.from.with_timezone(&site.offset).date_naive();
     let span = match event.until {
         None => format!("from {from} on, until it is amended"),

@@ -2,7 +2,7 @@
 
 mod gates;
 pub mod learned;
-mod log;
+pub mod log;
 mod mix;
 mod pool;
 pub mod rank;
@@ -22,7 +22,7 @@ use crate::tasks::{Context, Freshness, MixAnswer, PoolAnswer};
 use crate::units::{Dimension, System, show};
 
 pub use gates::{instruction, moves, openings};
-pub use log::{log, logged};
+
 pub use mix::{apart, difference, missed, release_line, release_words, setting_words, wells_changed};
 pub use pool::{cold_since_words, layer_words, reach_words, since_words};
 pub use targets::{EXAMPLE, named, range, standing_words};
@@ -199,7 +199,7 @@ fn wrapped(text: &str, indent: usize) -> String {
 }
 
 /// Words wrapped at so many cells, later lines indented.
-fn wrapped_at(text: &str, indent: usize, width: usize) -> String {
+pub(in crate::report) fn wrapped_at(text: &str, indent: usize, width: usize) -> String {
     let lead = text.len() - text.trim_start().len();
     let mut out = " ".repeat(lead);
     let mut used = lead;

@@ -5,6 +5,7 @@ mod learned;
 mod limits;
 mod months;
 mod operation;
+mod order_texts;
 mod outlets;
 mod reaches;
 mod river;
@@ -75,6 +76,7 @@ impl Site {
         spread::spread(raw, &mut problems);
         let learned = learned::learned(raw, &outlets, &mut problems);
         let season = season::season(raw, &mut problems);
+        let order = order_texts::texts(raw, &mut problems);
         coverage(raw, &mut problems);
         if any_refused(&problems) {
             return (None, problems);
@@ -111,6 +113,7 @@ impl Site {
                 columns: raw.columns.clone(),
                 casts: raw.casts.clone(),
                 season,
+                order,
                 demonstration: raw.demonstration,
             })
         })();

@@ -156,6 +156,6 @@ fn time(context: &Context, text: &str, option: &str) -> Result<DateTime<FixedOff
         .map_err(|words| Failure::Usage(format!("{option}: {words}; {TIME_CURE}")))
 }
 
-fn date(context: &Context, text: &str, option: &str) -> Result<NaiveDate, Failure> {
+pub(in crate::tasks) fn date(context: &Context, text: &str, option: &str) -> Result<NaiveDate, Failure> {
     Ok(time(context, text, option)?.date_naive())
 }

@@ -102,7 +102,7 @@ fn considered(site: &Site, shown: &Shown) -> Considered {
 }
 
 /// Gates by name, openings in percent.
-pub(super) fn gates(site: &Site, setting: &Setting) -> Gates {
+pub(in crate::tasks) fn gates(site: &Site, setting: &Setting) -> Gates {
     let mut out = Gates::default();
     for gate in &setting.gates {
         if let Some(outlet) = site.outlets.get(gate.outlet) {

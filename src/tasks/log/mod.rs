@@ -17,8 +17,10 @@ use crate::record::line::{Decision, Event, Line};
 
 use super::{Context, Failure};
 
+pub(super) use asked::date;
 pub use asked::{DecisionAsked, EventAsked};
-pub use past::{Cause, Hindcast, Past, PastDay, Scored, Spell, Turned};
+pub(super) use decided::gates;
+pub use past::{Cause, Hindcast, Past, PastDay, Scored, Spell, Turned, past, past_within};
 
 /// What was written.
 #[derive(Debug, Clone, PartialEq)]
@@ -107,9 +109,13 @@ fn problem_of(failure: &Failure) -> Problem {
     Problem::refused("log-amends", failure.words(), "read the log again")
 }
 
-fn path(context: &Context) -> Result<PathBuf, Failure> {
+/// The file that is written to.
+///
+/// # Errors
+/// A site inside the binary has none.
+pub fn path(context: &Context) -> Result<PathBuf, Failure> {
     context.folder.log_path().ok_or_else(|| {
-        let words = "this demonstration is held inside the program: it has no log";
+        let words = "this demonstration is held inside the program: it has no log to write";
         let cure = "write it out with `gatemix demo`, and name that folder";
         Failure::Refused(vec![Problem::refused("no-log", words, cure)], context.system)
     })

@@ -14,6 +14,9 @@ impl Context {
     /// What is set now, in numbers, and what to say of where that comes from.
     pub fn now_given(&self) -> (Given, Vec<Problem>) {
         let site = self.site();
+        if let Some(given) = &self.set_before {
+            return ((**given).clone(), Vec::new());
+        }
         let Some(decided) = self.standing() else { return (Given::now(site), Vec::new()) };
         let (id, since) = (decided.id, decided.decision.from.with_timezone(&site.offset).date_naive());
         let (given, gone) = Given::logged(site, &decided.decision.chosen);

@@ -1,10 +1,36 @@
 //! What happened: every day of the past held against the gauge, each decision, what a season cost beside doing nothing
 //! and beside perfect hindsight, and what the record teaches.
+//!
+//! Methods: `docs/methods.md`, section 9.
+
+mod applied;
+mod days;
+mod hindcast;
+mod spells;
+mod stood;
+mod turned;
+
+use std::collections::BTreeMap;
 
 use chrono::NaiveDate;
 
 use crate::problem::Problem;
-use crate::record::{Learning, Left, Score, Scores};
+use crate::rank::Progress;
+pub use crate::record::Cause;
+use crate::record::{Learned, Learning, Left, Pair, Row, Score, Scores, learn, pairs, scores};
+use crate::series::Daily;
+use crate::target::DAM;
+use crate::tasks::{Context, Failure};
+
+use applied::{Applied, applied, scored};
+use days::{Known, casts, known};
+use hindcast::hindcast;
+use spells::{From, spells};
+use stood::Tellers;
+use turned::turned;
+
+/// Share of the work that the days are; the rest is the season gone through again (choice).
+const DAYS: f64 = 0.2;
 
 /// A day of the past.
 #[derive(Debug, Clone, PartialEq)]
@@ -44,19 +70,6 @@ pub struct Turned {
     pub places: Vec<(String, Score, Score)>,
 }
 
-/// Something that may be why the gauge left the band.
-#[derive(Debug, Clone, PartialEq)]
-pub struct Cause {
-    /// What it is, in plain words that blame nobody.
-    pub name: &'static str,
-    /// What speaks for it.
-    pub speaks_for: Vec<String>,
-    /// What speaks against it.
-    pub against: Vec<String>,
-    /// What would tell, where neither does.
-    pub to_tell: &'static str,
-}
-
 /// Days in a row on which the gauge lay outside the band.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Spell {
@@ -81,6 +94,8 @@ pub struct Scored {
     pub degree_days_c: f64,
     /// Days that could be judged.
     pub judged: usize,
+    /// Days at the end that it does not reach, because no mix was allowed any more.
+    pub lost: usize,
 }
 
 /// A past season gone through again.
@@ -107,11 +122,13 @@ pub struct Past {
     pub days: Vec<PastDay>,
     /// Every decision that stood on a past day, by number.
     pub decisions: Vec<Turned>,
-    /// The whole past, temperature.
+    /// The whole past, temperature, with nothing learned.
     pub temperature: Scores,
     /// And oxygen.
     pub oxygen: Scores,
-    /// The same with what the record teaches, whether applied or not.
+    /// The same with what the site file applies of the learned; `None` where it applies nothing.
+    pub with_applied: Option<(Score, Score)>,
+    /// The same with what the record teaches, whether applied or not: fitted on these very days.
     pub with_learned: Option<(Score, Score)>,
     /// Days left out, each with its reason.
     pub left_out: Vec<Left>,
@@ -123,4 +140,126 @@ pub struct Past {
     pub hindcast: Result<Hindcast, String>,
     /// What was assumed.
     pub notes: Vec<Problem>,
+}
+
+/// What happened up to the date of the answer. Days are computed with nothing learned, and then with what the site file
+/// applies of it.
+///
+/// # Errors
+/// [`Failure::Stopped`], where `progress` stops it.
+pub fn past(context: &Context, progress: Progress) -> Result<Past, Failure> {
+    past_within(context, (NaiveDate::MIN, NaiveDate::MAX), progress)
+}
+
+/// The same of the days of a span alone; what the record teaches is taken from all of it.
+///
+/// # Errors
+/// As [`past`].
+pub fn past_within(
+    context: &Context,
+    span: (NaiveDate, NaiveDate),
+    progress: Progress,
+) -> Result<Past, Failure> {
+    let site = context.site();
+    let tellers = Tellers::of(context);
+    let gauges: BTreeMap<String, Daily> = context
+        .conditions
+        .observed
+        .iter()
+        .map(|(point, record)| (point.clone(), record.daily(site.offset, site.coverage)))
+        .collect();
+    let nothing = Daily::default();
+    let gauge = gauges.get(DAM).unwrap_or(&nothing);
+    let casts = casts(context);
+    let mut days = known(context, &tellers, &casts, gauge);
+    let told: Vec<_> = days.iter().map(Known::day).collect();
+    let mut paired = pairs(site, &told, gauge, &|done| progress(DAYS * done)).ok_or(Failure::Stopped)?;
+    let learning = learn(site, &paired.pairs, site.learning_days);
+    let later = |done: f64| progress(DAYS + (1.0 - DAYS) * done);
+    let hindcast = hindcast(context, &tellers, &casts, gauge, &later)?;
+    let is_inside = |date: NaiveDate| (span.0..=span.1).contains(&date);
+    days.retain(|day| is_inside(day.date));
+    paired.keep(&is_inside);
+    let warmth: Vec<_> = paired.pairs.iter().map(Pair::temperature_row).collect();
+    let breath: Vec<_> = paired.pairs.iter().map(Pair::oxygen_row).collect();
+    let computed: BTreeMap<NaiveDate, &Pair> =
+        paired.pairs.iter().chain(&paired.beside).map(|pair| (pair.date, pair)).collect();
+    let with_applied = applied(site, &days, &computed);
+    let shown = shown(&days, &computed, &with_applied, &paired.left_out, gauge);
+    let plain = site.without_learned();
+    let spells = spells(&From {
+        context,
+        plain: plain.as_ref().unwrap_or(site),
+        days: &shown,
+        known: &days,
+        pairs: &paired.pairs,
+        casts: &casts,
+        suspect: learning.suspect.as_ref(),
+    });
+    Ok(Past {
+        days: shown,
+        decisions: turned(&tellers, &days, &gauges),
+        temperature: scores(&warmth),
+        oxygen: scores(&breath),
+        with_applied: scored(&paired.pairs, &with_applied),
+        with_learned: with(&paired.pairs, &learning.learned),
+        left_out: paired.left_out,
+        learning,
+        spells,
+        hindcast,
+        notes: tellers.notes,
+    })
+}
+
+/// The scores of pairs with what was learned put to them; `None` where nothing was.
+fn with(pairs: &[Pair], learned: &Learned) -> Option<(Score, Score)> {
+    let moved = |band: (f64, f64), by: f64| (band.0 + by, band.1 + by);
+    let rows = pairs.iter().map(|pair| {
+        let (temperature_c, oxygen_mg_l) = pair.with(learned);
+        let (warmth, breath) = (pair.temperature_row(), pair.oxygen_row());
+        let gained = oxygen_mg_l.zip(pair.computed_mg_l).map(|(with, plain)| with - plain);
+        (
+            Row {
+                expected: Some(temperature_c),
+                band: Some(moved(pair.band_c, temperature_c - pair.computed_c)),
+                ..warmth
+            },
+            Row {
+                expected: oxygen_mg_l,
+                band: pair.band_mg_l.zip(gained).map(|(band, by)| moved(band, by)),
+                ..breath
+            },
+        )
+    });
+    let (warmth, breath): (Vec<Row>, Vec<Row>) = rows.unzip();
+    learned.has_effect().then(|| (Score::of(&warmth), Score::of(&breath)))
+}
+
+/// The days as they are shown.
+fn shown(
+    days: &[Known],
+    pairs: &BTreeMap<NaiveDate, &Pair>,
+    applied: &BTreeMap<NaiveDate, Applied>,
+    left_out: &[Left],
+    gauge: &Daily,
+) -> Vec<PastDay> {
+    let left: BTreeMap<NaiveDate, &Left> = left_out.iter().map(|left| (left.date, left)).collect();
+    let one = |day: &Known| {
+        let pair = pairs.get(&day.date);
+        let with = applied.get(&day.date);
+        PastDay {
+            date: day.date,
+            decision: day.stood.as_ref().and_then(|stood| stood.decision),
+            expected_c: with.map(|with| with.expected_c).or(pair.map(|pair| pair.computed_c)),
+            plain_c: with.and(pair).map(|pair| pair.computed_c),
+            band_c: with.map_or(pair.map(|pair| pair.band_c), |with| with.band_c),
+            measured_c: gauge.temperature_c.on(day.date).map(|day| day.mean),
+            expected_mg_l: with.map_or(pair.and_then(|pair| pair.computed_mg_l), |with| with.expected_mg_l),
+            plain_mg_l: with.and(pair).and_then(|pair| pair.computed_mg_l),
+            band_mg_l: with.map_or(pair.and_then(|pair| pair.band_mg_l), |with| with.band_mg_l),
+            measured_mg_l: gauge.oxygen_mg_l.on(day.date).map(|day| day.mean),
+            left_out: left.get(&day.date).map(|left| left.why.words()),
+        }
+    };
+    days.iter().map(one).collect()
 }

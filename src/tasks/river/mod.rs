@@ -17,6 +17,7 @@ use ahead::Ahead;
 pub use ahead::{Arriving, Timely};
 pub use asked::Window;
 pub use observed::Observed;
+pub(in crate::tasks) use observed::observed_on;
 pub use way::{Way, WayPart, Which};
 
 /// The answer of `river`.

@@ -1,5 +1,7 @@
 //! What stations recorded, against the rules.
 
+use chrono::NaiveDate;
+
 use crate::mix::reference_days;
 use crate::series::Daily;
 use crate::target::{self, observed as held};
@@ -16,6 +18,14 @@ pub struct Observed {
 
 /// Every rule with a record at its point, in the order of the site; also those not valid today.
 pub(super) fn observed(context: &Context) -> Vec<Observed> {
+    observed_on(context, &|_| true)
+}
+
+/// The same over the days that are wanted; what a statistic takes from days before them is not cut off.
+pub(in crate::tasks) fn observed_on(
+    context: &Context,
+    is_wanted: &dyn Fn(NaiveDate) -> bool,
+) -> Vec<Observed> {
     let (site, conditions) = (context.site(), &context.conditions);
     let daily = |point: &str| -> Option<Daily> {
         Some(conditions.observed.get(point)?.daily(site.offset, site.coverage))
@@ -24,7 +34,7 @@ pub(super) fn observed(context: &Context) -> Vec<Observed> {
         let station = daily(&rule.point)?;
         let dates = station.temperature_c.days.keys().copied();
         let reference = rule.reference.as_ref().map(|r| reference_days(site, r, conditions, dates));
-        let valid = |date| rule.valid_on(date, site.year_type.as_deref());
+        let valid = |date| is_wanted(date) && rule.valid_on(date, site.year_type.as_deref());
         let record = held(rule, &station, reference.as_ref(), site.coverage, valid);
         let bounds = [&record.temperature, &record.oxygen, &record.oxygen_share];
         let told = bounds.into_iter().flatten().any(|held| !held.days.is_empty());

@@ -1,3 +1,5 @@
+use crossterm::event::KeyCode::Char;
+
 use super::*;
 
 #[test]

@@ -22,6 +22,71 @@ pub enum Typed {
     Release,
     /// The folder of a new site.
     NewSite,
+    /// A line of what is to be logged.
+    Line(Line),
+    /// Words of the note.
+    Note(NoteLine),
+}
+
+/// A line of what is to be logged.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Line {
+    /// By whom.
+    By,
+    /// Why.
+    Why,
+    /// The day by which it is to be decided again.
+    Until,
+    /// What would end it earlier.
+    Trigger,
+    /// What happened.
+    Happened,
+    /// From when it happened.
+    From,
+    /// Its last day, or `open`.
+    Ended,
+}
+
+/// A line of the note.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum NoteLine {
+    /// Why, in the user's words.
+    Why,
+    /// Anything else.
+    Remarks,
+    /// When the change begins.
+    Begins,
+    /// The file to save it in.
+    File,
+    /// The same, a file of that name being there that is to be replaced.
+    FileThere,
+}
+
+impl Line {
+    /// What stands before it.
+    pub fn label(self) -> &'static str {
+        match self {
+            Self::By => "by",
+            Self::Why => "why",
+            Self::Until | Self::Ended => "until",
+            Self::Trigger => "ends if",
+            Self::Happened => "what",
+            Self::From => "from",
+        }
+    }
+
+    /// What may be typed, while it is.
+    pub fn hint(self) -> &'static str {
+        match self {
+            Self::By => "who says so; kept while the program runs",
+            Self::Why => "why it is decided so, in your words",
+            Self::Until => "the day by which it is decided again; empty: none is named",
+            Self::Trigger => "what would end it earlier, in your words; may stay empty",
+            Self::Happened => "what happened, in your words; its days are left out of learning",
+            Self::From => "since when; empty: the date of the answer",
+            Self::Ended => "its last day, or: open; empty: the day it begins",
+        }
+    }
 }
 
 /// A value that was typed.
@@ -78,6 +143,8 @@ impl Field {
             }
         };
         match self.typed {
+            Typed::Line(line) => said(line, text, context),
+            Typed::Note(line) => note(line, text, context),
             Typed::NewSite if text.is_empty() => Err("type the name of a folder".into()),
             Typed::NewSite => Ok(Value::Words(text.to_owned())),
             Typed::Colder => bound(Dimension::Temperature),
@@ -96,12 +163,7 @@ impl Field {
                     number(Dimension::Flow).and_then(|v| above_zero(v, "a flow"))
                 }
                 Cell::Pool => pool(context.map(Context::site), number(Dimension::Length)?, system),
-                Cell::Date => match context {
-                    Some(context) => parse_time(text, context.site().offset)
-                        .map(Value::Moment)
-                        .map_err(|why| format!("{why}; {TIME_CURE}")),
-                    None => Err("there is no site".into()),
-                },
+                Cell::Date => moment(text, context).map(Value::Moment),
                 Cell::Low(i) | Cell::Preferred(i) | Cell::High(i) => {
                     let target = context.and_then(|c| c.site().targets.get(i)).cloned();
                     let value = bound(target.as_ref().map_or(Dimension::Temperature, Target::dimension))?;
@@ -119,6 +181,46 @@ impl Field {
     pub fn check(&mut self, context: Option<&Context>, system: System) {
         self.wrong = self.value(context, system).err();
     }
+}
+
+fn moment(text: &str, context: Option<&Context>) -> Result<DateTime<FixedOffset>, String> {
+    let context = context.ok_or("there is no site")?;
+    parse_time(text, context.site().offset).map_err(|why| format!("{why}; {TIME_CURE}"))
+}
+
+/// A line of what is to be logged; what only the log can tell is checked when it is written.
+fn said(line: Line, text: &str, context: Option<&Context>) -> Result<Value, String> {
+    let words = || Ok(Value::Words(text.to_owned()));
+    match line {
+        Line::By if text.is_empty() => Err("type a name: the log needs to know who says so".into()),
+        Line::Why if text.is_empty() => Err("type why: a decision is logged with its reason".into()),
+        Line::Happened if text.is_empty() => Err("type what happened".into()),
+        Line::By | Line::Why | Line::Trigger | Line::Happened => words(),
+        Line::Until | Line::From | Line::Ended if text.is_empty() => words(),
+        Line::Ended if text == "open" => words(),
+        Line::From | Line::Ended => moment(text, context).map(|_| Value::Words(text.to_owned())),
+        Line::Until => {
+            let until = moment(text, context)?.date_naive();
+            match context.map(|c| c.on.date_naive()).filter(|on| until < *on) {
+                Some(on) => Err(format!("it lies before the day from which it holds, {on}")),
+                None => words(),
+            }
+        }
+    }
+}
+
+/// A line of the note.
+fn note(line: NoteLine, text: &str, context: Option<&Context>) -> Result<Value, String> {
+    match line {
+        NoteLine::Why | NoteLine::Remarks => {}
+        NoteLine::Begins if text.is_empty() => {}
+        NoteLine::Begins => _ = moment(text, context)?,
+        NoteLine::File | NoteLine::FileThere if text.is_empty() => {
+            return Err("type the name of a file".into());
+        }
+        NoteLine::File | NoteLine::FileThere => _ = super::note::format_of(text)?,
+    }
+    Ok(Value::Words(text.to_owned()))
 }
 
 fn opening(outlet: &Outlet, text: &str) -> Result<Value, String> {

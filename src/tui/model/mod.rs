@@ -3,9 +3,13 @@
 mod board;
 mod draft;
 mod field;
+mod form;
+mod log;
+mod note;
 mod season;
 mod session;
 mod tries;
+mod words;
 
 use chrono::{DateTime, Utc};
 
@@ -15,12 +19,16 @@ use crate::units::System;
 
 pub use board::{Cell, Row, rows};
 pub use draft::{Draft, History};
-pub use field::{Field, Typed, Value};
+pub use field::{Field, Line, NoteLine, Typed, Value};
+pub use form::{Entry, EntryOf, Form, Logs};
+pub use log::{LogPage, LogSpan, LogView, Passed};
+pub use note::{FORMATS, NoteQuestion, NoteView, Noted, Saved, format_of};
 pub use season::{Ahead, Left, Priced, SeasonPage, SeasonQuestion, SeasonShown, SeasonView};
 pub use session::{
     Downstream, MixView, Page, PoolView, RankView, Ranked, RiverPage, RiverView, Session, Shown, Whole,
 };
 pub use tries::{Nudge, asked, opening_of, set_flow, set_opening, set_release, set_total, taken, total_m3s};
+pub use words::AsTyped;
 
 use super::look::{Look, Theme};
 use super::work::Lane;
@@ -38,16 +46,22 @@ pub enum Screen {
     River,
     /// What it costs later.
     Season,
+    /// What was decided, and how it turned out.
+    Log,
+    /// Change order and agency note.
+    Note,
 }
 
 impl Screen {
     /// The screens there are, in the order of their numbers.
-    pub const ALL: [(&'static str, Self); 5] = [
+    pub const ALL: [(&'static str, Self); 7] = [
         ("pool", Self::Pool),
         ("mix", Self::Mix),
         ("rank", Self::Rank),
         ("river", Self::River),
         ("season", Self::Season),
+        ("log", Self::Log),
+        ("note", Self::Note),
     ];
 }
 
@@ -107,6 +121,8 @@ pub enum Over {
     Drill(usize),
     /// Something typed.
     Field(Field),
+    /// Something to be logged.
+    Form(Box<Form>),
 }
 
 /// What is said on the message line.
@@ -179,6 +195,14 @@ pub struct Model {
     pub ahead: Option<Under>,
     /// What is being sought of the cold water needed on a date.
     pub needed: Option<Under>,
+    /// What is being computed of the past.
+    pub past: Option<Under>,
+    /// What is being computed of the note.
+    pub note: Option<Under>,
+    /// Who logs, as last typed; not kept beyond this run.
+    pub by: String,
+    /// What is being logged, to be shown again where it cannot be.
+    pub logging: Option<Box<Form>>,
 }
 
 impl Model {
@@ -202,6 +226,10 @@ impl Model {
             down: None,
             ahead: None,
             needed: None,
+            past: None,
+            note: None,
+            by: String::new(),
+            logging: None,
         }
     }
 
@@ -228,9 +256,8 @@ impl Model {
 
     /// Whether anything is being computed.
     pub fn under_way(&self) -> bool {
-        [&self.quick, &self.long, &self.aside, &self.down, &self.ahead, &self.needed]
-            .into_iter()
-            .any(Option::is_some)
+        let lanes = [&self.quick, &self.long, &self.aside, &self.down, &self.ahead, &self.needed];
+        lanes.into_iter().chain([&self.past, &self.note]).any(Option::is_some)
     }
 
     /// What is under way in a lane.
@@ -242,6 +269,8 @@ impl Model {
             Lane::Down => &mut self.down,
             Lane::Ahead => &mut self.ahead,
             Lane::Needed => &mut self.needed,
+            Lane::Past => &mut self.past,
+            Lane::Note => &mut self.note,
         }
     }
 }

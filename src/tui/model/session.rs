@@ -4,14 +4,16 @@ use std::sync::Arc;
 
 use chrono::NaiveDate;
 
-use crate::tasks::rank::{RankAnswer, Shown as Mix};
+use crate::tasks::rank::{RankAnswer, RankAsked, Shown as Mix};
 use crate::tasks::river::RiverAnswer;
-use crate::tasks::{Cast, Context, Failure, Given, MixAnswer, PoolAnswer};
+use crate::tasks::{Cast, Changed, Context, Failure, Given, MixAnswer, PoolAnswer};
 
 use super::super::work::Anew;
 use super::Screen;
 use super::board::{Cell, Row, rows};
 use super::draft::{Draft, History};
+use super::log::{LogView, Passed};
+use super::note::{NoteQuestion, NoteView, Noted};
 use super::season::{Ahead, Left, Priced, SeasonQuestion, SeasonView};
 use super::tries::taken;
 
@@ -186,6 +188,22 @@ pub struct Session {
     pub priced: Option<Priced>,
     /// Why the newest question about it has no answer.
     pub price_wrong: Option<Failure>,
+    /// The past there is.
+    pub past: Option<Passed>,
+    /// The files and changes it was asked of last.
+    pub past_asked: Option<(Arc<Context>, Changed)>,
+    /// Why the newest question about it has no answer.
+    pub past_wrong: Option<Failure>,
+    /// Where the user is on the log screen.
+    pub log: LogView,
+    /// The note there is.
+    pub noted: Option<Noted>,
+    /// The question for one asked last.
+    pub note_asked: Option<NoteQuestion>,
+    /// Why that has no answer.
+    pub note_wrong: Option<Failure>,
+    /// Where the user is on the note screen.
+    pub note: NoteView,
 }
 
 impl Session {
@@ -222,12 +240,31 @@ impl Session {
             left_asked: None,
             priced: None,
             price_wrong: None,
+            past: None,
+            past_asked: None,
+            past_wrong: None,
+            log: LogView::default(),
+            noted: None,
+            note_asked: None,
+            note_wrong: None,
+            note: NoteView::default(),
         }
     }
 
     /// What the user changed.
     pub fn draft(&self) -> &Draft {
         self.history.now()
+    }
+
+    /// What the ranking is asked.
+    pub fn rank_asked(&self) -> RankAsked {
+        let (draft, site) = (self.draft(), self.base.site());
+        RankAsked {
+            release: draft.release_m3s.map(|flow| format!("{flow} m3/s")),
+            order: Some(draft.order.iter().map(|c| c.name()).collect::<Vec<_>>().join(",")),
+            without: draft.without.iter().map(|&i| site.outlets[i].name.clone()).collect(),
+            ..RankAsked::default()
+        }
     }
 
     /// The files with what is changed, as far as that is computed.

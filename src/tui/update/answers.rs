@@ -8,7 +8,7 @@ use crate::units::{Dimension, show};
 
 use super::super::model::{Model, Over, Session, Shown, Stage};
 use super::super::work::{Computed, Done, Lane, Sent};
-use super::{Effect, ask_casts, ask_mixes, ask_rank, ask_river, change, complain, say};
+use super::{Effect, ask_casts, ask_looked_at, ask_mixes, ask_rank, ask_river, change, complain, say};
 
 /// Takes what a worker sent; what is no longer wanted is dropped.
 pub(super) fn sent(model: &mut Model, sent: Sent) -> Vec<Effect> {
@@ -43,7 +43,7 @@ pub(super) fn sent(model: &mut Model, sent: Sent) -> Vec<Effect> {
                 }
                 Done::Mixed(mixed) => {
                     let effects = self::mixed(model, mixed);
-                    effects.into_iter().chain(ask_river(model)).chain(super::season::ask(model)).collect()
+                    effects.into_iter().chain(ask_looked_at(model)).collect()
                 }
                 Done::Ranked(ranked) => {
                     super::rank::ranked(model, ranked);
@@ -55,6 +55,8 @@ pub(super) fn sent(model: &mut Model, sent: Sent) -> Vec<Effect> {
                     Vec::new()
                 }
                 Done::Priced(priced) => super::rank::priced(model, priced),
+                Done::Passed(passed) => super::log::told(model, passed),
+                Done::Noted(noted) => super::note::told(model, noted),
                 Done::Down(down) => {
                     if let Some(session) = model.session_mut() {
                         match down {
@@ -111,8 +113,8 @@ fn opened(model: &mut Model, opened: Result<Arc<Context>, Failure>) -> Vec<Effec
         }
     };
     model.stage = Stage::Site(session);
-    let season = super::season::ask(model);
-    [ask_mixes(model, None), ask_casts(model), ask_rank(model), season].into_iter().flatten().collect()
+    let asked = [ask_mixes(model, None), ask_casts(model), ask_rank(model)];
+    asked.into_iter().flatten().chain(ask_looked_at(model)).collect()
 }
 
 fn mixed(model: &mut Model, mixed: Result<Box<Computed>, Failure>) -> Vec<Effect> {

@@ -126,7 +126,7 @@ fn over(model: &mut Model, action: Action) -> Vec<Effect> {
             let count = model.session().map_or(0, |s| s.base.site().outlets.len());
             model.over = Some(Over::Drill(moved(at, action, count)));
         }
-        (Over::Field(_), _) => {}
+        (Over::Field(_) | Over::Form(_), _) => {}
     }
     Vec::new()
 }

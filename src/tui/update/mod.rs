@@ -1,33 +1,39 @@
 //! A message changes the model, and may ask for something to be done outside it.
 
 mod answers;
+mod asking;
 mod list;
+mod log;
+mod logging;
 mod mix;
 mod mouse;
 mod needed;
+mod note;
 mod pool;
 mod rank;
 mod river;
 mod season;
 mod typing;
 
-use std::sync::Arc;
-
 use chrono::{DateTime, Utc};
 use crossterm::event::{KeyEvent, MouseEvent};
 
 use crate::files::folder::demonstrations;
 use crate::problem::Problem;
-use crate::tasks::rank::RankAsked;
-use crate::tasks::{Asked, Given};
+use crate::tasks::Asked;
+use crate::tasks::log::{Logged, NotLogged};
 use crate::units::System;
 
+use asking::{ask, ask_casts, ask_looked_at, ask_mixes, ask_rank, ask_river};
 pub(super) use river::rules;
 
 use super::keys::{Action, Place, action};
-use super::model::{Choice, Draft, Likes, Message, Model, Over, Screen, Session, Stage, Under};
-use super::view::{answer_text, failure_words, mix_rows, rank_rows, river_rows, rule_in_sight, season_rows};
-use super::work::{Lane, On, Seen, Sent, Work};
+use super::model::{Choice, Draft, Entry, Likes, Message, Model, Over, Saved, Screen, Session, Stage};
+use super::view::{
+    answer_text, failure_words, log_rows, mix_rows, note_rows, rank_rows, river_rows, rule_in_sight,
+    season_rows,
+};
+use super::work::{Lane, Seen, Sent, Work};
 
 /// A message.
 #[derive(Debug)]
@@ -52,6 +58,10 @@ pub enum Event {
     Made(Result<String, Problem>),
     /// Something that could not be done.
     Said(Problem),
+    /// What was logged, or why nothing was.
+    Logged(Result<Box<Logged>, NotLogged>),
+    /// What was to be saved, and why it could not be.
+    Saved(Box<Saved>, Option<Problem>),
 }
 
 /// What is to be done outside the model.
@@ -71,6 +81,10 @@ pub enum Effect {
     Copy(String),
     /// Keep what the user likes.
     Keep(Likes),
+    /// Write something to the log.
+    Log(Box<Entry>),
+    /// Save something in a file.
+    Save(Saved),
     /// Stop for the shell.
     Suspend,
     /// Leave.
@@ -119,6 +133,8 @@ pub fn update(model: &mut Model, event: Event) -> Vec<Effect> {
         }
         Event::Sites(list) => list::listed(model, list),
         Event::Made(Ok(folder)) => open(model, folder),
+        Event::Logged(logged) => logging::logged(model, logged),
+        Event::Saved(saved, problem) => note::saved(model, *saved, problem),
         Event::Made(Err(problem)) | Event::Said(problem) => {
             let system = model.system();
             complain(model, problem.text(system));
@@ -131,6 +147,7 @@ pub fn update(model: &mut Model, event: Event) -> Vec<Effect> {
 pub fn places(model: &Model) -> Vec<Place> {
     match &model.over {
         Some(Over::Field(_)) => return vec![Place::Field],
+        Some(Over::Form(_)) => return vec![Place::Form],
         Some(Over::Help(_)) => return vec![Place::Help, Place::Everywhere],
         Some(_) => return vec![Place::List, Place::Everywhere],
         None => {}
@@ -146,6 +163,8 @@ pub fn places(model: &Model) -> Vec<Place> {
                 Screen::Rank => Place::Rank,
                 Screen::River => Place::River,
                 Screen::Season => Place::Season,
+                Screen::Log => Place::Log,
+                Screen::Note => Place::Note,
             };
             vec![screen, Place::Site, Place::Everywhere]
         }
@@ -159,8 +178,10 @@ fn pressed(model: &mut Model, key: &KeyEvent) -> Vec<Effect> {
     {
         return vec![if action == Action::Quit { Effect::Quit } else { Effect::Suspend }];
     }
-    if matches!(model.over, Some(Over::Field(_))) {
-        return typing::key(model, key);
+    match model.over {
+        Some(Over::Field(_)) => return typing::key(model, key),
+        Some(Over::Form(_)) => return logging::key(model, key),
+        _ => {}
     }
     match action(key, &places(model)) {
         Some(action) => act(model, action),
@@ -190,6 +211,8 @@ fn act(model: &mut Model, action: Action) -> Vec<Effect> {
         Action::Screen(number) => to_screen(model, |_| number.saturating_sub(1)),
         Action::NextScreen => to_screen(model, |at| (at + 1) % Screen::ALL.len()),
         Action::PreviousScreen => to_screen(model, |at| (at + Screen::ALL.len() - 1) % Screen::ALL.len()),
+        Action::Decide => logging::decide(model),
+        Action::Happened => logging::happened(model),
         other => match &model.stage {
             Stage::Sites { .. } | Stage::Broken { .. } => list::act(model, other),
             Stage::Opening { .. } => Vec::new(),
@@ -199,6 +222,8 @@ fn act(model: &mut Model, action: Action) -> Vec<Effect> {
                 Screen::Rank => rank::act(model, other),
                 Screen::River => river::act(model, other),
                 Screen::Season => season::act(model, other),
+                Screen::Log => log::act(model, other),
+                Screen::Note => note::act(model, other),
             },
         },
     }
@@ -214,9 +239,9 @@ fn to_screen(model: &mut Model, to: impl Fn(usize) -> usize) -> Vec<Effect> {
     model.message = None;
     if let Some(session) = model.session_mut() {
         // who comes back to what was stopped wants it
-        session.season_wrong = None;
+        (session.season_wrong, session.past_wrong, session.note_wrong) = (None, None, None);
     }
-    ask_river(model).into_iter().chain(season::ask(model)).collect()
+    ask_looked_at(model)
 }
 
 /// Back: what is looked at on the pool screen first, then long work is stopped, then what was said is taken off.
@@ -233,7 +258,16 @@ fn back(model: &mut Model) -> Vec<Effect> {
             return Vec::new();
         }
     }
-    let season = model.session().is_some_and(|s| s.screen == Screen::Season);
+    let screen = model.session().map(|s| s.screen);
+    let season = screen == Some(Screen::Season);
+    let stopped = match screen {
+        Some(Screen::Log) => log::stop(model),
+        Some(Screen::Note) => note::stop(model),
+        _ => None,
+    };
+    if let Some(effect) = stopped {
+        return vec![effect];
+    }
     if season && let Some(effect) = season::stop(model).or_else(|| needed::stop(model)) {
         return vec![effect];
     }
@@ -246,24 +280,24 @@ fn back(model: &mut Model) -> Vec<Effect> {
         return vec![effect];
     }
     model.message = None;
-    if model.session().is_some_and(|s| s.screen == Screen::Rank) {
-        return rank::back(model);
-    }
-    if season {
-        season::back(model);
-    }
-    if model.session().is_some_and(|s| s.screen == Screen::River) {
-        river::back(model);
+    match screen {
+        Some(Screen::Rank) => return rank::back(model),
+        Some(Screen::River) => river::back(model),
+        Some(Screen::Season) => season::back(model),
+        Some(Screen::Log) => log::back(model),
+        Some(Screen::Pool | Screen::Mix | Screen::Note) | None => {}
     }
     Vec::new()
 }
 
 fn copy(model: &mut Model) -> Vec<Effect> {
-    let waits = model.quick.is_some();
+    let (waits, system) = (model.quick.is_some(), model.system());
     let old = model.session().is_some_and(|s| match s.screen {
         Screen::Rank => !s.ranks_now(),
         Screen::River => !s.flows_now(),
         Screen::Season => !s.seasons_now(),
+        Screen::Log => !s.past_now(),
+        Screen::Note => !s.notes_now(system),
         Screen::Pool | Screen::Mix => s.wrong.is_some() || !s.is_current() || waits,
     });
     if old {
@@ -298,15 +332,6 @@ fn say(model: &mut Model, words: impl Into<String>) {
 /// Says what went wrong.
 fn complain(model: &mut Model, words: impl Into<String>) {
     model.message = Some(Message { words: words.into(), wrong: true });
-}
-
-/// Asks a question; what was asked before in its lane is wanted no more.
-fn ask(model: &mut Model, work: Work) -> Effect {
-    model.generation += 1;
-    let generation = model.generation;
-    let opening = matches!(work, Work::Open(..));
-    *model.under(work.lane()) = Some(Under { generation, since: model.clock, done: 0.0, opening });
-    Effect::Ask(generation, Box::new(work))
 }
 
 /// Takes a new draft and asks what that makes necessary.
@@ -346,53 +371,4 @@ fn recompute(model: &mut Model, before: &Draft) -> Vec<Effect> {
 
 fn draft_of(model: &Model) -> Option<&Draft> {
     model.session().map(Session::draft)
-}
-
-/// Asks for the casts of the season, each as old as it is at the date.
-fn ask_casts(model: &mut Model) -> Option<Effect> {
-    let session = model.session()?;
-    let work = Work::Casts(session.base.clone(), session.draft().changed.clone());
-    Some(ask(model, work))
-}
-
-/// Asks for every try that has no answer yet.
-fn ask_mixes(model: &mut Model, solve: Option<Given>) -> Option<Effect> {
-    // a question now would stop the opening; what is opened asks for every try by itself
-    if model.quick.as_ref().is_some_and(|under| under.opening) {
-        return None;
-    }
-    let session = model.session()?;
-    let draft = session.draft();
-    let same = session.shown.as_ref().filter(|_| session.is_current());
-    let (on, tries) = match same {
-        Some(shown) => {
-            let missing = |t: &&Given| !shown.mixes.iter().any(|(g, _)| g == *t);
-            (On::Same(shown.on.context.clone()), draft.tries.iter().filter(missing).cloned().collect())
-        }
-        None => (On::Files(session.base.clone(), draft.changed.clone()), draft.tries.clone()),
-    };
-    Some(ask(model, Work::Mix { on, tries, solve }))
-}
-
-/// Asks for what arrives downstream, where that is looked at and not known yet; it is made of answers that are there.
-fn ask_river(model: &mut Model) -> Option<Effect> {
-    let session = model.session().filter(|s| s.screen == Screen::River && !s.flows_now())?;
-    let (given, answer) = (session.draft().tried()?.clone(), session.tried_now()?.clone());
-    let best = session.best_now().map(|(mix, given)| Box::new((given, mix.clone())));
-    let context = Arc::clone(session.context());
-    Some(ask(model, Work::River { context, tried: Box::new((given, answer)), best }))
-}
-
-/// Asks for the ranking.
-fn ask_rank(model: &mut Model) -> Option<Effect> {
-    let session = model.session()?;
-    let (draft, site) = (session.draft(), session.base.site());
-    let asked = RankAsked {
-        release: draft.release_m3s.map(|flow| format!("{flow} m3/s")),
-        order: Some(draft.order.iter().map(|c| c.name()).collect::<Vec<_>>().join(",")),
-        without: draft.without.iter().map(|&i| site.outlets[i].name.clone()).collect(),
-        ..RankAsked::default()
-    };
-    let work = Work::Rank { base: session.base.clone(), changed: draft.changed.clone(), asked };
-    Some(ask(model, work))
 }

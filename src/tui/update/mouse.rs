@@ -3,7 +3,7 @@
 use crossterm::event::{MouseButton, MouseEvent, MouseEventKind};
 
 use super::super::keys::Action;
-use super::super::model::{Model, Over, Stage};
+use super::super::model::{Model, Over, Screen, Stage};
 use super::super::view::{Hit, hit};
 use super::{Effect, act};
 
@@ -19,7 +19,7 @@ pub(super) fn moused(model: &mut Model, mouse: MouseEvent) -> Vec<Effect> {
 }
 
 fn typing(model: &Model) -> bool {
-    matches!(model.over, Some(Over::Field(_)))
+    matches!(model.over, Some(Over::Field(_) | Over::Form(_)))
 }
 
 fn pointed(model: &mut Model, mouse: MouseEvent, pressed: bool) -> Vec<Effect> {
@@ -56,6 +56,9 @@ fn pointed(model: &mut Model, mouse: MouseEvent, pressed: bool) -> Vec<Effect> {
             if let Some(session) = model.session_mut() {
                 super::rank::choose_mix(session, at);
             }
+        }
+        Hit::Day(day) if model.session().is_some_and(|s| s.screen == Screen::Log) => {
+            super::log::pressed(model, day);
         }
         Hit::Day(day) => super::season::pressed(model, day),
         Hit::Rule(at) if pressed => return super::river::pressed(model, at),

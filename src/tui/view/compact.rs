@@ -54,6 +54,10 @@ pub(super) fn draw(model: &Model, area: Rect, buf: &mut Buffer) {
                 lines.extend(super::river::in_short(model, session, width));
             } else if session.screen == Screen::Season {
                 lines.extend(super::season::in_short(model, session, width));
+            } else if session.screen == Screen::Log {
+                lines.extend(super::log::in_short(model, session, width));
+            } else if session.screen == Screen::Note {
+                lines.extend(super::note::in_short(model, session, width));
             } else if session.screen == Screen::Rank {
                 for (line, role) in super::rank::in_short(model, session, width) {
                     lines.push((line, role));

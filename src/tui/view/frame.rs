@@ -72,7 +72,7 @@ pub(super) fn draw(model: &Model, parts: &Parts, buf: &mut Buffer) {
     match &model.stage {
         Stage::Site(session) => {
             head(model, session, parts.head, buf);
-            tabs(model, session, parts.tabs, buf);
+            tabs(model, session, parts, buf);
         }
         Stage::Opening { .. } => {
             put(buf, parts.head, 0, 0, "gatemix", look.style(Role::Strong));
@@ -210,7 +210,8 @@ fn tab_places() -> impl Iterator<Item = (usize, &'static str, u16, u16)> {
     })
 }
 
-fn tabs(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
+fn tabs(model: &Model, session: &Session, parts: &Parts, buf: &mut Buffer) {
+    let area = parts.tabs;
     let mut end = 0;
     for (number, name, at, wide) in tab_places() {
         let here = Screen::ALL.get(number - 1).is_some_and(|s| s.1 == session.screen);
@@ -221,7 +222,12 @@ fn tabs(model: &Model, session: &Session, area: Rect, buf: &mut Buffer) {
     }
     let room = usize::from(area.width.saturating_sub(end + 2));
     let (words, role) = status(model, session);
-    put_right(buf, area, area.width, 0, &cut(&words, room), model.look.style(role));
+    // what has no room beside the tabs stands where a message would
+    if words.width() > room && model.message.is_none() {
+        put(buf, parts.message, 0, 0, &words, model.look.style(role));
+    } else {
+        put_right(buf, area, area.width, 0, &cut(&words, room), model.look.style(role));
+    }
 }
 
 /// Limits that the setting tried breaks.
@@ -256,6 +262,11 @@ pub(super) fn status(model: &Model, session: &Session) -> (String, Role) {
     }
     if let Some(under) = model.needed.as_ref().filter(|under| is_long(model, under)) {
         return (format!("cold water needed {:.0} %, Esc stops", 100.0 * under.done), Role::Warn);
+    }
+    for (under, what) in [(&model.past, "log"), (&model.note, "note")] {
+        if let Some(under) = under.as_ref().filter(|under| is_long(model, under)) {
+            return (format!("{what} {:.0} %, Esc on its screen stops", 100.0 * under.done), Role::Warn);
+        }
     }
     let broken = broken_limits(session);
     if session.wrong.is_none() && session.screen == Screen::Mix && broken > 0 {

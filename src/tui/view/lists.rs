@@ -12,7 +12,7 @@ use crate::units::System;
 use super::super::draw::boxed;
 use super::super::keys::{Place, TABLE};
 use super::super::look::{Role, Symbols, Theme};
-use super::super::model::{Choice, Field, Model, Over, Screen, Stage, Typed};
+use super::super::model::{Choice, Field, Model, NoteLine, Over, Screen, Stage, Typed};
 use super::write::{cut, put, row_style, wrapped};
 
 /// Lines for what is wrong with what is typed (choice: the longest cure takes three).
@@ -51,6 +51,8 @@ fn here(model: &Model) -> Place {
             Screen::Rank => Place::Rank,
             Screen::River => Place::River,
             Screen::Season => Place::Season,
+            Screen::Log => Place::Log,
+            Screen::Note => Place::Note,
         },
         Stage::Sites { .. } => Place::Sites,
         Stage::Broken { .. } => Place::Problems,
@@ -59,7 +61,14 @@ fn here(model: &Model) -> Place {
 }
 
 /// A box in the middle, so many lines and cells inside; the inside.
-fn middle(model: &Model, area: Rect, title: &str, width: u16, lines: usize, buf: &mut Buffer) -> Rect {
+pub(super) fn middle(
+    model: &Model,
+    area: Rect,
+    title: &str,
+    width: u16,
+    lines: usize,
+    buf: &mut Buffer,
+) -> Rect {
     let width = (width + 4).min(area.width);
     let height =
         u16::try_from(lines).unwrap_or(u16::MAX).saturating_add(2).min(area.height.saturating_sub(2));
@@ -129,6 +138,7 @@ pub(super) fn over(model: &Model, area: Rect, buf: &mut Buffer) -> Option<Positi
             None
         }
         Over::Field(field) => Some(typed(model, field, area, buf)),
+        Over::Form(form) => Some(super::form::draw(model, form, area, buf)),
     }
 }
 
@@ -199,6 +209,11 @@ fn typed(model: &Model, field: &Field, area: Rect, buf: &mut Buffer) -> Position
         }
         Typed::Release => "total release to rank at".into(),
         Typed::NewSite => "folder of the new site".into(),
+        Typed::Line(line) => line.label().into(),
+        Typed::Note(NoteLine::Why) => "why, as the note says it; empty: as it was decided".into(),
+        Typed::Note(NoteLine::Remarks) => "remarks, as the note says them".into(),
+        Typed::Note(NoteLine::Begins) => "when the change begins; empty: the next full hour".into(),
+        Typed::Note(NoteLine::File | NoteLine::FileThere) => "save in the file".into(),
     };
     let inside = middle(model, area, &title, 60, 1 + FIELD_WORDS, buf);
     let look = model.look;
@@ -212,6 +227,9 @@ fn typed(model: &Model, field: &Field, area: Rect, buf: &mut Buffer) -> Position
         (Some(why), _) => (format!("! {}", harmless(why)), Role::Outside),
         (None, Typed::Release) => {
             ("Enter sets it, empty: as the site gives it; Esc leaves it".to_owned(), Role::Quiet)
+        }
+        (None, Typed::Note(NoteLine::File | NoteLine::FileThere)) => {
+            ("Enter saves it, in the folder of the site; .html, .md or .txt".to_owned(), Role::Quiet)
         }
         (None, _) => ("Enter sets it, Esc leaves it as it was".to_owned(), Role::Quiet),
     };

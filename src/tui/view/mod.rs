@@ -1,9 +1,12 @@
 //! Drawing: from the model to cells, and from a place on the screen back to what is drawn there.
 
 mod compact;
+mod form;
 mod frame;
 mod lists;
+mod log;
 mod mix;
+mod note;
 mod pool;
 mod rank;
 mod river;
@@ -19,6 +22,7 @@ use ratatui::buffer::Buffer;
 use ratatui::layout::{Position, Rect};
 
 use crate::problem::{Problem, Weight, any_refused, harmless};
+use crate::report::page::{Format, written};
 use crate::report::text;
 use crate::tasks::{Context, Failure};
 use crate::units::System;
@@ -48,7 +52,7 @@ pub enum Hit {
     Mix(usize),
     /// A rule of the river screen.
     Rule(usize),
-    /// A date of the season.
+    /// A date of the season, or of the record.
     Day(NaiveDate),
 }
 
@@ -76,6 +80,8 @@ pub fn draw(model: &Model, area: Rect, buf: &mut Buffer) -> Option<Position> {
                 Screen::Rank => rank::draw(model, session, parts.body, buf),
                 Screen::River => river::draw(model, session, parts.body, buf),
                 Screen::Season => season::draw(model, session, parts.body, buf),
+                Screen::Log => log::draw(model, session, parts.body, buf),
+                Screen::Note => note::draw(model, session, parts.body, buf),
             },
         }
     }
@@ -101,6 +107,8 @@ pub fn hit(model: &Model, column: u16, row: u16) -> Option<Hit> {
             Screen::Rank => rank::hit(model, session, parts.body, at),
             Screen::River => river::hit(model, session, parts.body, at).map(Hit::Rule),
             Screen::Season => season::hit(model, session, parts.body, at).map(Hit::Day),
+            Screen::Log => log::hit(model, session, parts.body, at).map(Hit::Day),
+            Screen::Note => None,
         },
         Stage::Opening { .. } | Stage::Broken { .. } => None,
     }
@@ -122,6 +130,18 @@ pub(super) fn river_rows(model: &Model) -> usize {
 pub(super) fn season_rows(model: &Model) -> usize {
     let area = Rect::new(0, 0, model.size.0, model.size.1);
     model.session().map_or(0, |session| season::last(model, session, frame::parts(model, area).body))
+}
+
+/// The furthest that what scrolls on the log screen can be scrolled.
+pub(super) fn log_rows(model: &Model) -> usize {
+    let area = Rect::new(0, 0, model.size.0, model.size.1);
+    model.session().map_or(0, |session| log::last(model, session, frame::parts(model, area).body))
+}
+
+/// The furthest that the sheet of the note screen can be scrolled.
+pub(super) fn note_rows(model: &Model) -> usize {
+    let area = Rect::new(0, 0, model.size.0, model.size.1);
+    model.session().map_or(0, |session| note::last(model, session, frame::parts(model, area).body))
 }
 
 /// The first line of the rules with which the one chosen is in sight.
@@ -178,6 +198,10 @@ pub(super) fn answer_text(model: &Model) -> Option<String> {
             let ahead = session.season_shown()?.ahead;
             Some(text::season(&in_units(&ahead.context), &ahead.answer))
         }
+        Screen::Log => {
+            session.past.as_ref().map(|passed| text::log::log(&in_units(&passed.context), &passed.past))
+        }
+        Screen::Note => session.noted.as_ref().map(|noted| written(&noted.page, Format::Text)),
     }
 }
 

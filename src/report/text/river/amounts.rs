@@ -14,7 +14,7 @@ pub(super) fn value(rule: &Target, value: f64, system: System) -> String {
 }
 
 /// How far outside, in the same unit; temperatures as a difference.
-pub(in crate::report::text) fn by(rule: &Target, by: f64, system: System) -> String {
+pub(in crate::report) fn by(rule: &Target, by: f64, system: System) -> String {
     match rule.statistic {
         Statistic::DaysAbove(_) => super::record::days_of(by),
         Statistic::ShareOfDays(_) => format!("{:.0} %", 100.0 * by),
@@ -24,7 +24,7 @@ pub(in crate::report::text) fn by(rule: &Target, by: f64, system: System) -> Str
 }
 
 /// A sum of degrees over days.
-pub(in crate::report::text) fn degree_days(c_days: f64, system: System) -> String {
+pub(in crate::report) fn degree_days(c_days: f64, system: System) -> String {
     let unit = system.unit(Dimension::TemperatureDifference);
     format!("{} {} days", figure(c_days, unit, 0), unit.symbol())
 }

@@ -20,6 +20,7 @@ use super::{flow, labelled, list, release_words, setting_words, wrapped};
 
 pub use ahead::{days, timely_words};
 pub use amounts::unit_si;
+pub(in crate::report) use amounts::{by, degree_days};
 pub use places::{PlaceRow, places, stage_words, window_words};
 pub use record::{PROVISIONAL, REVIEWED, SIGNS, calendar, record};
 pub use rules::{RuleRow, RuleStanding, conflicts, rules};

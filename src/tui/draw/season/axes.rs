@@ -1,15 +1,15 @@
-//! Where the parts of the picture lie, the axis of time, the bands of the water.
+//! Where the parts of the picture lie, the bands of the water.
 //!
 //! Figures of the layout are choices.
 
-use chrono::{Datelike, Days};
 use ratatui::layout::Rect;
 use unicode_width::UnicodeWidthStr;
 
 use crate::plot::{Scale, on_rows};
+use crate::tui::Look;
 use crate::tui::draw::pen::Pen;
-use crate::tui::{Look, Role, Symbols};
-use crate::units::{Dimension, System, Unit};
+use crate::tui::draw::through::{Rows, Time, row};
+use crate::units::{Dimension, System};
 
 use super::{GateThrough, SeasonPicture};
 
@@ -25,31 +25,19 @@ const GATES: usize = 8;
 pub(super) const BANDS: usize = 6;
 /// Least span of the bands, units shown.
 const LEAST_SPAN: f64 = 1.0;
-/// Values of an axis from which on volumes are counted in thousands.
-const LARGE: f64 = 5000.0;
-const THOUSAND: f64 = 1000.0;
-/// Days of a season so short that weeks are marked instead of months.
-const SHORT: usize = 45;
 /// A threshold this near to an edge of a band, in bands, takes its place.
 const TOUCHES: f64 = 0.2;
-/// Room over and under curves, as a share of what they span.
-const MARGIN: f64 = 0.04;
 /// Least rows of curves.
 const CURVE: usize = 3;
 /// Most rows of days outside.
 const OUTSIDE: usize = 2;
 
-/// Rows of a part: the first, and how many.
-pub(super) type Rows = (usize, usize);
-
 /// Where the parts lie.
 pub(super) struct Frame {
     /// Row of the bands.
     pub(super) legend: usize,
-    /// Columns left of the plot.
-    pub(super) side: usize,
-    /// Columns of the plot.
-    pub(super) cols: usize,
+    /// The axis of time.
+    pub(super) time: Time,
     /// Whether the parts have titles in the row over them.
     pub(super) titles: bool,
     pub(super) water: Rows,
@@ -59,7 +47,6 @@ pub(super) struct Frame {
     pub(super) outside: Rows,
     pub(super) gates: Rows,
     pub(super) axis: usize,
-    pub(super) days: usize,
 }
 
 impl Frame {
@@ -93,8 +80,7 @@ impl Frame {
         let moves = cold.map_or(below, |(from, rows)| from + rows);
         Some(Self {
             legend: title,
-            side,
-            cols: width - side,
+            time: Time { side, cols: width - side, days: picture.days },
             titles,
             water,
             release,
@@ -103,67 +89,15 @@ impl Frame {
             outside: (moves + 1, outside),
             gates: (moves + 1 + outside, gates),
             axis: height - 1,
-            days: picture.days,
         })
-    }
-
-    /// The day that a column of the plot shows.
-    pub(super) fn day_of(&self, col: usize) -> usize {
-        day_of(col, self.cols, self.days)
-    }
-
-    /// Column of the plot of a day.
-    pub(super) fn col_of(&self, day: usize) -> usize {
-        col_of(day, self.cols, self.days)
-    }
-
-    /// Months, or weeks of a short season, and the day read.
-    pub(super) fn time(&self, picture: &SeasonPicture, pen: &mut Pen, look: Look) {
-        let ascii = look.symbols == Symbols::Ascii;
-        let mut free = 0;
-        for day in 0..self.days {
-            let Some(date) = picture.first.checked_add_days(Days::new(day as u64)) else { return };
-            let text = match (day, self.days < SHORT) {
-                (0, _) => date.format("%b %-d").to_string(),
-                (_, true) if day.is_multiple_of(7) => date.format("%b %-d").to_string(),
-                (_, false) if date.day() == 1 => date.format("%b").to_string(),
-                _ => continue,
-            };
-            let col = self.col_of(day);
-            if col < free || col + 1 + text.len() > self.cols {
-                continue;
-            }
-            pen.put(self.side + col, self.axis, if ascii { "|" } else { "╷" }, Role::Quiet);
-            pen.put(self.side + col + 1, self.axis, &text, Role::Quiet);
-            free = col + text.len() + 2;
-        }
-        if let Some(day) = picture.cursor.filter(|d| *d < self.days) {
-            pen.put(self.side + self.col_of(day), self.axis, "^", Role::Chosen);
-        }
     }
 
     /// A line down the pictures at the day read, where nothing stands yet.
     pub(super) fn cursor(&self, picture: &SeasonPicture, pen: &mut Pen, look: Look) {
-        let Some(day) = picture.cursor.filter(|d| *d < self.days) else { return };
-        let line = if look.symbols == Symbols::Ascii { "|" } else { "│" };
         let strips = (self.moves, 1 + self.outside.1 + self.gates.1);
         let parts = [Some(self.water), Some(self.release), self.cold, Some(strips)];
-        for row in parts.into_iter().flatten().flat_map(|(from, rows)| from..from + rows) {
-            pen.fill(self.side + self.col_of(day), row, line, Role::Strong);
-        }
-    }
-
-    /// Signs with what they mean from a cell on, as far as there is room.
-    pub(super) fn entries(&self, mut col: usize, row: usize, of: &[(&str, &str, Role)], pen: &mut Pen) {
-        for (glyph, word, role) in of {
-            let wide = word.width() + 4;
-            if col + wide > self.side + self.cols {
-                return;
-            }
-            pen.put(col, row, glyph, *role);
-            pen.put(col + 2, row, word, Role::Quiet);
-            col += wide;
-        }
+        let rows = parts.into_iter().flatten().flat_map(|(from, rows)| from..from + rows);
+        self.time.line(picture.cursor, rows, pen, look);
     }
 }
 
@@ -176,16 +110,6 @@ pub(super) fn has_titles(area: Rect) -> bool {
 pub(super) fn elevations(picture: &SeasonPicture) -> Option<Scale> {
     let (low_m, high_m) = picture.water.elevations_m;
     Scale::new(low_m, high_m)
-}
-
-/// Row of a value, from the top of so many.
-pub(super) fn row(scale: &Scale, value: f64, rows: usize) -> usize {
-    rows.saturating_sub(1 + scale.cell(value, rows).unwrap_or(0))
-}
-
-/// Value in the middle of a row, counted from the top of so many.
-pub(super) fn middle(scale: &Scale, row: usize, rows: usize) -> f64 {
-    scale.value(1.0 - (row as f64 + 0.5) / rows as f64)
 }
 
 /// Names of the gates on rows of the water: each on its own or one beside it, several together where they must.
@@ -202,16 +126,6 @@ pub(super) fn names_on_rows(picture: &SeasonPicture, rows: usize) -> Vec<String>
         }
     }
     out
-}
-
-/// The day that a column shows: the one in its middle.
-fn day_of(col: usize, cols: usize, days: usize) -> usize {
-    ((2 * col + 1) * days / (2 * cols.max(1))).min(days.saturating_sub(1))
-}
-
-/// The column of a day: that of its middle.
-fn col_of(day: usize, cols: usize, days: usize) -> usize {
-    ((2 * day + 1) * cols / (2 * days.max(1))).min(cols.saturating_sub(1))
 }
 
 /// Edges between the bands of a picture, rising, in the unit shown: round, and no more than there are characters for.
@@ -237,58 +151,9 @@ pub(super) fn edges(
     edges
 }
 
-/// How a value is counted on an axis, and the name of that: volumes in what leaves few digits.
-pub(super) fn counted(dimension: Dimension, system: System, greatest: f64) -> (f64, String) {
-    let unit = system.unit(dimension);
-    let large = unit.from_si(greatest).abs() >= LARGE;
-    match (dimension, system) {
-        (Dimension::Volume, System::Si) => {
-            (Unit::CubicHectometre.to_si(1.0), Unit::CubicHectometre.symbol().to_owned())
-        }
-        (Dimension::Volume, System::Us) if large => (THOUSAND, format!("{THOUSAND:.0} {}", unit.symbol())),
-        _ => (1.0, unit.symbol().to_owned()),
-    }
-}
-
-/// The scale of values in the unit shown: as narrow as they allow, so that little of the picture is empty.
-pub(super) fn scale(low: f64, high: f64) -> Option<Scale> {
-    let room = (MARGIN * (high - low)).max(1e-6 * high.abs().max(1.0));
-    Scale::new(low - room, high + room)
-}
-
-/// Ticks that so many rows have room for.
-pub(super) fn steps(rows: usize) -> u32 {
-    u32::try_from(rows / 2).unwrap_or(4).clamp(2, 5)
-}
-
 #[cfg(test)]
 mod tests {
     use super::*;
-
-    #[test]
-    fn law_a_column_and_its_day_find_each_other() {
-        for days in 1..250 {
-            for cols in [1, 2, 17, 36, 80, 210, 300] {
-                let (mut before, mut seen) = (0, 0);
-                for col in 0..cols {
-                    let day = day_of(col, cols, days);
-                    assert!(day < days && day >= before);
-                    before = day;
-                    if days >= cols {
-                        assert_eq!(col_of(day, cols, days), col, "{days} days on {cols} columns");
-                    }
-                }
-                for day in 0..days {
-                    let col = col_of(day, cols, days);
-                    assert!(col < cols && col >= seen);
-                    seen = col;
-                    if days <= cols {
-                        assert_eq!(day_of(col, cols, days), day, "{days} days on {cols} columns");
-                    }
-                }
-            }
-        }
-    }
 
     #[test]
     fn scenario_bands_are_round_and_few() {
@@ -307,14 +172,5 @@ mod tests {
             let edges = c(3.3, 3.3 + 0.7 * f64::from(k), Some(5.1));
             assert!(edges.len() < BANDS && edges.is_sorted(), "{edges:?}");
         }
-    }
-
-    #[test]
-    fn scenario_volumes_are_counted_in_what_is_read_at_a_glance() {
-        let of = |m3, system| counted(Dimension::Volume, system, m3);
-        assert_eq!(of(5e7, System::Si), (1e6, "hm3".into()));
-        assert_eq!(of(5e7, System::Us), (1e3, "1000 acre-ft".into()));
-        assert_eq!(of(9e5, System::Us), (1.0, "acre-ft".into()));
-        assert_eq!(counted(Dimension::Temperature, System::Us, 2e7), (1.0, "F".into()));
     }
 }

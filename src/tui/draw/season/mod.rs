@@ -1,7 +1,6 @@
 //! A season: the water of the pool through time, what is released against what is asked, cold water, moves and gates.
 
 mod axes;
-mod curves;
 mod strips;
 #[cfg(test)]
 mod tests;
@@ -11,14 +10,13 @@ use chrono::NaiveDate;
 use ratatui::buffer::Buffer;
 use ratatui::layout::Rect;
 
-use crate::plot::Stroke;
 use crate::tui::{Look, Role};
 use crate::units::{Dimension, System};
 
 use super::pen::Pen;
-use curves::Curves;
+use super::through::Curves;
 
-pub use curves::{shade, sign};
+pub use super::through::{CurvesThrough, LineThrough, shade, sign};
 
 /// What the picture shows. Days count from 0.
 #[derive(Debug, Clone, PartialEq)]
@@ -67,36 +65,6 @@ pub struct WaterDay {
     pub layers: Vec<(f64, Option<f64>)>,
     /// Where it is steepest, m.
     pub thermocline_m: Option<f64>,
-}
-
-/// Curves over one time, with a shaded range behind them.
-#[derive(Debug, Clone, PartialEq)]
-pub struct CurvesThrough {
-    /// What they are of.
-    pub name: String,
-    /// Their dimension.
-    pub dimension: Dimension,
-    /// Least and greatest value of all that is to be compared, SI.
-    pub span: (f64, f64),
-    /// What is shaded, and its range by day, SI.
-    pub shaded: (String, Vec<Option<[f64; 2]>>),
-    /// Curves, the one drawn on top last.
-    pub lines: Vec<LineThrough>,
-}
-
-/// One curve.
-#[derive(Debug, Clone, PartialEq)]
-pub struct LineThrough {
-    /// Its name.
-    pub name: String,
-    /// What it means.
-    pub role: Role,
-    /// How strong it is.
-    pub stroke: Stroke,
-    /// Its plain character.
-    pub mark: &'static str,
-    /// By day, SI.
-    pub values: Vec<Option<f64>>,
 }
 
 /// A gate through time.
@@ -148,13 +116,14 @@ pub fn season(picture: &SeasonPicture, area: Rect, buf: &mut Buffer, look: Look)
     water::draw(picture, &frame, &mut pen, look);
     let cold = picture.cold.as_ref().zip(frame.cold);
     let curves = [Some((&picture.release, frame.release)), cold].into_iter().flatten();
-    let curves: Vec<Curves> =
-        curves.filter_map(|(of, rows)| Curves::of(picture.system, of, rows, &frame, look)).collect();
+    let curves: Vec<Curves> = curves
+        .filter_map(|(of, rows)| Curves::of(picture.system, of, rows, (frame.time, frame.titles), look))
+        .collect();
     for curves in &curves {
         curves.draw(&mut pen);
     }
     strips::draw(picture, &frame, &mut pen, look);
-    frame.time(picture, &mut pen, look);
+    frame.time.draw(picture.first, picture.cursor, frame.axis, &mut pen, look);
     frame.cursor(picture, &mut pen, look);
     // behind everything
     for curves in &curves {
@@ -170,6 +139,5 @@ pub fn untold(area: Rect, look: Look) -> Vec<(&'static str, &'static str)> {
 /// The day under a cell of the buffer, for the mouse.
 pub fn day_at(picture: &SeasonPicture, area: Rect, col: u16, row: u16) -> Option<usize> {
     let frame = axes::Frame::of(picture, area)?;
-    let col = usize::from(col.checked_sub(area.x)?).checked_sub(frame.side)?;
-    (row >= area.y && row < area.bottom() && col < frame.cols).then(|| frame.day_of(col))
+    frame.time.day_at(area, col, row)
 }

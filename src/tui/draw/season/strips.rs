@@ -11,10 +11,10 @@ use super::{GateDay, SeasonPicture};
 
 pub(super) fn draw(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: Look) {
     let ascii = look.symbols == Symbols::Ascii;
-    let end = frame.side - 1;
+    let end = frame.time.side - 1;
     pen.put(0, frame.moves, "moves", Role::Strong);
-    for col in 0..frame.cols {
-        let here = |day: &usize| frame.col_of(*day) == col;
+    for col in 0..frame.time.cols {
+        let here = |day: &usize| frame.time.col_of(*day) == col;
         let moved: usize = picture.moves.iter().filter(|m| here(&m.0)).map(|m| m.1).sum();
         let forced = picture.moves.iter().any(|m| here(&m.0) && m.2);
         let text = match moved {
@@ -23,31 +23,31 @@ pub(super) fn draw(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: 
             1..=9 => moved.to_string(),
             _ => "+".to_owned(),
         };
-        pen.put(frame.side + col, frame.moves, &text, if forced { Role::Outside } else { Role::Plain });
+        pen.put(frame.time.side + col, frame.moves, &text, if forced { Role::Outside } else { Role::Plain });
     }
     let (top, rows) = frame.outside;
     for (row, (name, days)) in (top..top + rows).zip(&picture.outside) {
         pen.put(0, row, &cut(name, end), Role::Strong);
         for day in days {
-            pen.put(frame.side + frame.col_of(*day), row, "!", Role::Outside);
+            pen.put(frame.time.side + frame.time.col_of(*day), row, "!", Role::Outside);
         }
     }
     let (top, rows) = frame.gates;
     for (row, gate) in (top..top + rows).zip(&picture.gates) {
         pen.put(0, row, &cut(&gate.name, end), Role::Plain);
-        for col in 0..frame.cols {
-            let (glyph, role) = match (gate.days.get(frame.day_of(col)), ascii) {
+        for col in 0..frame.time.cols {
+            let (glyph, role) = match (gate.days.get(frame.time.day_of(col)), ascii) {
                 (Some(GateDay::Open(_)), true) => ("#", Role::Zone),
                 (Some(GateDay::Open(_)), false) => ("█", Role::Zone),
                 (Some(GateDay::Shut), true) => ("-", Role::Quiet),
                 (Some(GateDay::Shut), false) => ("─", Role::Quiet),
                 (Some(GateDay::Lost) | None, _) => continue,
             };
-            pen.put(frame.side + col, row, glyph, role);
+            pen.put(frame.time.side + col, row, glyph, role);
         }
         for (day, lost) in turns(&gate.days) {
             let glyph = if lost { "x" } else { "+" };
-            pen.put(frame.side + frame.col_of(day), row, glyph, Role::Outside);
+            pen.put(frame.time.side + frame.time.col_of(day), row, glyph, Role::Outside);
         }
     }
 }

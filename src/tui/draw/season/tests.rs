@@ -1,4 +1,6 @@
 use super::*;
+use crate::plot::Stroke;
+use crate::tui::draw::through;
 use crate::tui::{Symbols, Theme};
 
 /// A pool of 40 m that falls to 25 m, cold below 12 m over the bed, with two gates of which the upper is lost.
@@ -116,17 +118,17 @@ fn scenario_the_range_within_reach_is_one_band_under_the_curves() {
         let (buf, area) = (cells(&picture, size, look), Rect::new(0, 0, size.0, size.1));
         let frame = axes::Frame::of(&picture, area).unwrap();
         let (top, rows) = frame.release;
-        let scale = axes::scale(6.0, 20.0).unwrap();
-        for col in 0..frame.cols {
-            let col = u16::try_from(frame.side + col).unwrap();
-            let held = |row: &usize| (7.0..=19.0).contains(&axes::middle(&scale, *row, rows));
+        let scale = through::scale(6.0, 20.0).unwrap();
+        for col in 0..frame.time.cols {
+            let col = u16::try_from(frame.time.side + col).unwrap();
+            let held = |row: &usize| (7.0..=19.0).contains(&through::middle(&scale, *row, rows));
             let want: Vec<usize> = (0..rows).filter(held).collect();
             assert!(want.len() > 2 && reached(&buf, look, col, frame.release) == want, "{col} {size:?}");
         }
         // what comes and what is asked are unbroken above it
         let role = |role: Role| look.style(role).fg;
-        for col in 0..frame.cols {
-            let x = u16::try_from(frame.side + col).unwrap();
+        for col in 0..frame.time.cols {
+            let x = u16::try_from(frame.time.side + col).unwrap();
             let fg = |role_of: Role| {
                 (top..top + rows).any(|y| buf[(x, u16::try_from(y).unwrap())].fg == role(role_of).unwrap())
             };
@@ -176,8 +178,10 @@ fn scenario_gates_that_share_a_row_are_all_named() {
 fn scenario_the_day_under_the_mouse() {
     let (picture, area) = (picture(120), Rect::new(2, 1, 60, 20));
     let frame = axes::Frame::of(&picture, area).unwrap();
-    let at =
-        |day| day_at(&picture, area, 2 + u16::try_from(frame.side + frame.col_of(day)).unwrap(), 9).unwrap();
+    let at = |day| {
+        day_at(&picture, area, 2 + u16::try_from(frame.time.side + frame.time.col_of(day)).unwrap(), 9)
+            .unwrap()
+    };
     assert!(at(0) <= 2 && at(60).abs_diff(60) <= 2 && at(119) >= 117);
     assert_eq!(day_at(&picture, area, 3, 9), None);
 }

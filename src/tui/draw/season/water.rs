@@ -7,6 +7,7 @@ use unicode_width::UnicodeWidthStr;
 
 use crate::plot::Scale;
 use crate::tui::draw::pen::{Pen, cut};
+use crate::tui::draw::through;
 use crate::tui::{Look, Role, Symbols};
 use crate::units::Dimension;
 
@@ -81,21 +82,21 @@ struct Cells<'a> {
 
 impl<'a> Cells<'a> {
     fn new(frame: &'a Frame, scale: Scale) -> Self {
-        Self { frame, scale, all: vec![Cell::default(); frame.cols * frame.water.1] }
+        Self { frame, scale, all: vec![Cell::default(); frame.time.cols * frame.water.1] }
     }
 
     /// Row of an elevation, from the top of the water's part.
     fn row(&self, elevation_m: f64) -> usize {
-        super::axes::row(&self.scale, elevation_m, self.frame.water.1)
+        through::row(&self.scale, elevation_m, self.frame.water.1)
     }
 
     /// Elevation of the middle of a row, m.
     fn middle_m(&self, row: usize) -> f64 {
-        super::axes::middle(&self.scale, row, self.frame.water.1)
+        through::middle(&self.scale, row, self.frame.water.1)
     }
 
     fn cell(&mut self, col: usize, row: usize) -> Option<&mut Cell> {
-        self.all.get_mut(row * self.frame.cols + col)
+        self.all.get_mut(row * self.frame.time.cols + col)
     }
 
     fn put(&mut self, col: usize, row: usize, glyph: &'static str, role: Role) {
@@ -115,8 +116,8 @@ impl<'a> Cells<'a> {
     fn draw(&self, pen: &mut Pen) {
         for (i, cell) in self.all.iter().enumerate() {
             let Some((glyph, role)) = cell.drawn else { continue };
-            let (row, col) = (i / self.frame.cols, i % self.frame.cols);
-            let (col, row) = (self.frame.side + col, self.frame.water.0 + row);
+            let (row, col) = (i / self.frame.time.cols, i % self.frame.time.cols);
+            let (col, row) = (self.frame.time.side + col, self.frame.water.0 + row);
             pen.put(col, row, glyph, role);
             if let (Role::Mark, Some(band)) = (role, cell.band) {
                 pen.behind(col, row, Role::Band(band));
@@ -131,16 +132,16 @@ pub(super) fn draw(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: 
     let marks = marks(look);
     let edges = edges(water.span, water.threshold, water.dimension, picture.system);
     let mut cells = Cells::new(frame, scale);
-    for col in 0..frame.cols {
-        if let Some(day) = water.days.get(frame.day_of(col)) {
+    for col in 0..frame.time.cols {
+        if let Some(day) = water.days.get(frame.time.day_of(col)) {
             column(picture, day, col, &edges, &marks, &mut cells);
         }
     }
-    for col in (0..frame.cols).step_by(GAPS) {
+    for col in (0..frame.time.cols).step_by(GAPS) {
         limits(picture, col, &marks, &mut cells);
     }
-    for col in 0..frame.cols {
-        let steepest_m = water.days.get(frame.day_of(col)).and_then(|day| day.thermocline_m);
+    for col in 0..frame.time.cols {
+        let steepest_m = water.days.get(frame.time.day_of(col)).and_then(|day| day.thermocline_m);
         if let Some(elevation_m) = steepest_m {
             cells.mark(col, cells.row(elevation_m), marks.thermocline);
         }
@@ -182,7 +183,7 @@ fn column(
 
 /// The limits of what the open gates draw on the day of a column: zones that overlap are one.
 fn limits(picture: &SeasonPicture, col: usize, marks: &Marks, cells: &mut Cells) {
-    let day = cells.frame.day_of(col);
+    let day = cells.frame.time.day_of(col);
     let zones = picture.gates.iter().filter_map(|gate| match gate.days.get(day) {
         Some(GateDay::Open(zone)) => *zone,
         _ => None,
@@ -208,13 +209,13 @@ pub(super) fn joined(mut zones: Vec<[f64; 2]>) -> Vec<[f64; 2]> {
 /// An open gate, and where it is lost and comes back.
 fn open(gate: &GateThrough, marks: &Marks, cells: &mut Cells) {
     let row = cells.row(gate.elevation_m);
-    for col in 0..cells.frame.cols {
-        if let Some(GateDay::Open(_)) = gate.days.get(cells.frame.day_of(col)) {
+    for col in 0..cells.frame.time.cols {
+        if let Some(GateDay::Open(_)) = gate.days.get(cells.frame.time.day_of(col)) {
             cells.mark(col, row, marks.open);
         }
     }
     for (day, lost) in turns(&gate.days) {
-        cells.put(cells.frame.col_of(day), row, if lost { "x" } else { "+" }, Role::Outside);
+        cells.put(cells.frame.time.col_of(day), row, if lost { "x" } else { "+" }, Role::Outside);
     }
 }
 
@@ -233,7 +234,7 @@ pub(super) fn turns(days: &[GateDay]) -> Vec<(usize, bool)> {
 fn side(picture: &SeasonPicture, cells: &Cells, pen: &mut Pen, look: Look) {
     let (top, rows) = cells.frame.water;
     let (line, tick) = if look.symbols == Symbols::Ascii { ("|", ">") } else { ("│", "┤") };
-    let end = cells.frame.side - 1;
+    let end = cells.frame.time.side - 1;
     (top..top + rows).for_each(|row| pen.put(end, row, line, Role::Quiet));
     for gate in &picture.gates {
         pen.put(end, top + cells.row(gate.elevation_m), tick, Role::Quiet);
@@ -278,6 +279,6 @@ fn legend(picture: &SeasonPicture, frame: &Frame, pen: &mut Pen, look: Look, edg
         let title = format!("pool, {}", picture.system.unit(Dimension::Length).symbol());
         pen.put(0, 0, &title, Role::Strong);
         let entries = meanings(look).map(|(glyph, word)| (glyph, word, Role::Strong));
-        frame.entries(title.width() + 3, 0, &entries, pen);
+        frame.time.entries(title.width() + 3, 0, &entries, pen);
     }
 }

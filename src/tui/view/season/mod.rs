@@ -26,6 +26,8 @@ use crate::tui::draw::season::{day_at, season};
 use crate::tui::look::Role;
 use crate::tui::model::{Model, SeasonPage, SeasonShown, Session};
 
+pub(super) use readout::plural;
+
 use super::failure_words;
 use super::scroll::{self, Lines};
 use super::write::{cut, put, wrapped};

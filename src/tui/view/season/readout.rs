@@ -284,6 +284,6 @@ fn days_outside(told: &TargetTally) -> String {
 }
 
 /// `1 day`, `3 days`.
-pub(super) fn plural(count: u64, word: &str) -> String {
+pub(in crate::tui::view) fn plural(count: u64, word: &str) -> String {
     if count == 1 { format!("1 {word}") } else { format!("{count} {word}s") }
 }

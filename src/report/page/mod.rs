@@ -1,4 +1,19 @@
 //! A written piece, whatever the format it is read in: headings, words, tables, lines to be filled by hand, pictures.
+//! One shape, three writers; each cleans every text (`clean`) and then escapes it for its own format.
+
+mod clean;
+mod html;
+mod markdown;
+mod picture;
+mod table;
+mod text;
+
+pub use clean::clean;
+
+/// Parts of a piece one after the other.
+fn joined<T>(items: &[T], one: impl Fn(&T) -> String) -> String {
+    items.iter().map(one).collect::<Vec<_>>().concat()
+}
 
 /// The formats a piece is written in.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -19,6 +34,15 @@ pub struct Page {
     pub title: String,
     /// What follows.
     pub blocks: Vec<Block>,
+}
+
+/// The piece in a format. The same piece gives the same bytes.
+pub fn written(page: &Page, format: Format) -> String {
+    match format {
+        Format::Markdown => markdown::written(page),
+        Format::Text => text::written(page),
+        Format::Html => html::written(page),
+    }
 }
 
 /// A part of a piece.
@@ -98,6 +122,9 @@ pub struct PoolPicture {
     pub zones: Vec<(String, f64, f64)>,
 }
 
+/// A row of ranges: label, value, band.
+pub type RangeRow = (String, Option<f64>, Option<(f64, f64)>);
+
 /// Rows of ranges on one axis.
 #[derive(Debug, Clone, PartialEq)]
 pub struct RangesPicture {
@@ -106,8 +133,13 @@ pub struct RangesPicture {
     /// Range asked: least, preferred, greatest, each where it is given.
     pub asked: (Option<f64>, Option<f64>, Option<f64>),
     /// Rows: label, value, band.
-    pub rows: Vec<(String, Option<f64>, Option<(f64, f64)>)>,
+    pub rows: Vec<RangeRow>,
 }
+
+/// A date with its low and high.
+pub type DayRange = (chrono::NaiveDate, f64, f64);
+/// A limit: name, from, to, value.
+pub type DayLimit = (String, chrono::NaiveDate, chrono::NaiveDate, f64);
 
 /// Series over dates.
 #[derive(Debug, Clone, PartialEq)]
@@ -115,11 +147,11 @@ pub struct DaysPicture {
     /// What is measured, with its unit.
     pub axis: String,
     /// Bands: name, and by date low and high.
-    pub bands: Vec<(String, Vec<(chrono::NaiveDate, f64, f64)>)>,
+    pub bands: Vec<(String, Vec<DayRange>)>,
     /// Lines: name and points by date; a gap of more than a day is not bridged.
     pub lines: Vec<(String, Vec<(chrono::NaiveDate, f64)>)>,
     /// Limits: name, from, to, value.
-    pub limits: Vec<(String, chrono::NaiveDate, chrono::NaiveDate, f64)>,
+    pub limits: Vec<DayLimit>,
     /// Dates marked, such as decisions.
     pub marks: Vec<(chrono::NaiveDate, String)>,
 }

@@ -10,13 +10,16 @@ use crate::tui::{Look, Role, Symbols};
 use crate::units::{System, Unit};
 
 use super::CurvesThrough;
-use super::axes::{Frame, Rows, counted, middle, row, scale, steps};
+use super::values::{counted, middle, row, scale, steps};
+use super::{Rows, Time};
 
 /// Curves over one time, and where they lie.
-pub(super) struct Curves<'a> {
+pub(in crate::tui::draw) struct Curves<'a> {
     of: &'a CurvesThrough,
     rows: Rows,
-    frame: &'a Frame,
+    time: Time,
+    /// Whether they have a title in the row over them.
+    titled: bool,
     look: Look,
     /// The values, in the unit and the count shown.
     y: Scale,
@@ -27,18 +30,18 @@ pub(super) struct Curves<'a> {
 
 impl<'a> Curves<'a> {
     /// `None` where the values have no scale.
-    pub(super) fn of(
+    pub(in crate::tui::draw) fn of(
         system: System,
         curves: &'a CurvesThrough,
         rows: Rows,
-        frame: &'a Frame,
+        (time, titled): (Time, bool),
         look: Look,
     ) -> Option<Self> {
         let unit = system.unit(curves.dimension);
         let (times, counted) = counted(curves.dimension, system, curves.span.1);
         let shown = |value: f64| unit.from_si(value) / times;
         let y = scale(shown(curves.span.0), shown(curves.span.1))?;
-        Some(Self { of: curves, rows, frame, look, y, unit, times, counted })
+        Some(Self { of: curves, rows, time, titled, look, y, unit, times, counted })
     }
 
     fn shown(&self, si: f64) -> f64 {
@@ -46,10 +49,10 @@ impl<'a> Curves<'a> {
     }
 
     /// The curves with their axis. Where they meet in a cell their dots merge, in the colour of the last.
-    pub(super) fn draw(&self, pen: &mut Pen) {
+    pub(in crate::tui::draw) fn draw(&self, pen: &mut Pen) {
         let ((top, rows), grain) = (self.rows, self.look.symbols.grain());
-        let mut dots = Dots::new(grain, self.frame.cols, rows);
-        if let Some(x) = Scale::new(0.0, self.frame.days as f64) {
+        let mut dots = Dots::new(grain, self.time.cols, rows);
+        if let Some(x) = Scale::new(0.0, self.time.days as f64) {
             for (i, line) in self.of.lines.iter().enumerate() {
                 let point =
                     |(i, v): (usize, &Option<f64>)| (i as f64 + 0.5, v.map_or(f64::NAN, |v| self.shown(v)));
@@ -57,26 +60,26 @@ impl<'a> Curves<'a> {
                 dots.curve(i, line.stroke, &points, &x, &self.y);
             }
         }
-        let cells = (0..rows).flat_map(|row| (0..self.frame.cols).map(move |col| (col, row)));
+        let cells = (0..rows).flat_map(|row| (0..self.time.cols).map(move |col| (col, row)));
         for (col, row) in cells {
             let Some(spot) = dots.spot(col, row) else { continue };
             let Some(line) = self.of.lines.get(spot.curve) else { continue };
             let glyph = spot.glyph.to_string();
             let mark = if grain == Grain::Ascii { line.mark } else { &glyph };
-            pen.put(self.frame.side + col, top + row, mark, line.role);
+            pen.put(self.time.side + col, top + row, mark, line.role);
         }
         self.side(pen);
-        if self.frame.titles {
+        if self.titled {
             self.title(pen);
         }
     }
 
     /// The range behind the curves: its sign in the cells they leave, its colour in all of them. A cell is in it where
     /// its middle is; of a range too narrow for that the cell of its middle.
-    pub(super) fn shade(&self, pen: &mut Pen) {
+    pub(in crate::tui::draw) fn shade(&self, pen: &mut Pen) {
         let (top, rows) = self.rows;
-        for col in 0..self.frame.cols {
-            let of = self.of.shaded.1.get(self.frame.day_of(col)).copied().flatten();
+        for col in 0..self.time.cols {
+            let of = self.of.shaded.1.get(self.time.day_of(col)).copied().flatten();
             let Some([low, high]) = of.map(|range| range.map(|v| self.shown(v))) else { continue };
             let held = |row: &usize| (low..=high).contains(&middle(&self.y, *row, rows));
             let mut held: Vec<usize> = (0..rows).filter(held).collect();
@@ -84,7 +87,7 @@ impl<'a> Curves<'a> {
                 held.push(row(&self.y, 0.5 * (low + high), rows));
             }
             for row in held {
-                let (col, row) = (self.frame.side + col, top + row);
+                let (col, row) = (self.time.side + col, top + row);
                 pen.fill(col, row, shade(self.look), Role::Reach);
                 pen.behind(col, row, Role::Reach);
             }
@@ -95,7 +98,7 @@ impl<'a> Curves<'a> {
     fn side(&self, pen: &mut Pen) {
         let ascii = self.look.symbols == Symbols::Ascii;
         let (line, tick) = if ascii { ("|", "+") } else { ("│", "┤") };
-        let ((top, rows), end) = (self.rows, self.frame.side - 1);
+        let ((top, rows), end) = (self.rows, self.time.side - 1);
         (top..top + rows).for_each(|row| pen.put(end, row, line, Role::Quiet));
         let marks = self.y.marks(steps(rows));
         let decimals = usize::from(marks.decimals);
@@ -107,7 +110,7 @@ impl<'a> Curves<'a> {
             pen.put(end, row, tick, Role::Quiet);
             numbered.push(row);
         }
-        if !self.frame.titles {
+        if !self.titled {
             let room = end.saturating_sub(wide + 1);
             pen.put(0, top, &cut(&self.of.name, room), Role::Strong);
             // the unit where no number needs the room
@@ -128,7 +131,7 @@ impl<'a> Curves<'a> {
         if curves.shaded.1.iter().any(Option::is_some) {
             entries.push((shade(self.look), &curves.shaded.0, Role::Reach));
         }
-        self.frame.entries(text.width() + 3, row, &entries, pen);
+        self.time.entries(text.width() + 3, row, &entries, pen);
     }
 }
 

@@ -1,0 +1,195 @@
+//! Pictures of a note: the pool with what draws from it, the release beside the ranked mixes, the season in its cases.
+
+use chrono::NaiveDate;
+
+use crate::mix::Drawn;
+use crate::report::page::{Block, DaysPicture, Picture, PoolPicture, RangesPicture, Shows};
+use crate::season::{Reached, SeasonDay};
+use crate::target::DAM;
+use crate::tasks::Context;
+use crate::tasks::note::NoteAnswer;
+use crate::tasks::rank::Shown;
+use crate::tasks::season::SeasonRun;
+use crate::units::{Dimension, say};
+
+use super::words::{banded, named, warmth};
+
+/// Heights at which the curves of the pool are read (choice).
+const HEIGHTS: usize = 90;
+/// Ranked mixes drawn (choice).
+const MIXES: usize = 4;
+
+pub(super) fn pictures(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
+    let all = [Some(pool(context, answer)), Some(ranges(context, answer)), days(context, answer)];
+    all.into_iter().flatten().map(|picture| Block::Picture(Box::new(picture))).collect()
+}
+
+/// The pool from bed to surface with its outlets, and the zones now and to be.
+fn pool(context: &Context, answer: &NoteAnswer) -> Picture {
+    let (site, column, system) = (context.site(), &context.profile.column, context.system);
+    let (length, degree) = (system.unit(Dimension::Length), system.unit(Dimension::Temperature));
+    let (bed_m, surface_m) = (column.bed_m(), column.surface_m());
+    let heights = (0..=HEIGHTS).map(|k| bed_m + (surface_m - bed_m) * k as f64 / HEIGHTS as f64);
+    let readings: Vec<_> = heights.map(|z| (length.from_si(z), column.reading(z))).collect();
+    let open = |outlet: usize| {
+        answer.mix.setting.gates.iter().find(|gate| gate.outlet == outlet && gate.flow_m3s > 0.0)
+    };
+    let outlets = site.outlets.iter().enumerate().map(|(index, outlet)| {
+        let gate = open(index);
+        let part = outlet.open_part(gate.map_or(1.0, |gate| gate.opening));
+        let ends = [part.top_m - part.height_m, part.top_m].map(|z| length.from_si(z));
+        (outlet.name.clone(), ends[0], ends[1], gate.is_some())
+    });
+    let zones_of = |levels: &[Drawn], when: &str| -> Vec<(String, f64, f64)> {
+        let of = |drawn: &Drawn| {
+            let zone = drawn.zone?;
+            let names: Vec<&str> = drawn
+                .level
+                .outlets
+                .iter()
+                .filter_map(|i| Some(site.outlets.get(*i)?.name.as_str()))
+                .collect();
+            let ends = [zone.lower.limit_m, zone.upper.limit_m].map(|z| length.from_si(z));
+            Some((format!("{} {when}", names.join(" ")), ends[0], ends[1]))
+        };
+        levels.iter().filter_map(of).collect()
+    };
+    let now = answer.mix.now.as_ref().map(|(_, now)| &now.levels[..]);
+    let mut zones = now.map_or_else(Vec::new, |levels| zones_of(levels, "now"));
+    let wanted = &answer.mix.mix.levels;
+    zones.extend(zones_of(wanted, if answer.stands { "now" } else { "then" }));
+    let words = |levels: &[Drawn]| {
+        let of = |drawn: &Drawn| {
+            let (zone, draw) = (drawn.zone?, drawn.draw?);
+            let names: Vec<&str> = drawn
+                .level
+                .outlets
+                .iter()
+                .filter_map(|i| Some(site.outlets.get(*i)?.name.as_str()))
+                .collect();
+            Some(format!(
+                "{} from {} to {}: {}",
+                names.join(" "),
+                say::m(zone.lower.limit_m, 2),
+                say::m(zone.upper.limit_m, 2),
+                warmth(draw.temperature_c)
+            ))
+        };
+        levels.iter().filter_map(of).collect::<Vec<_>>().join("; ")
+    };
+    let before = now.map_or_else(String::new, |levels| format!(" Now draw {}.", words(levels)));
+    Picture {
+        title: "The pool and what draws from it".to_owned(),
+        words: format!(
+            "Bed at {}, surface at {}; surface water {}, deepest water {}. As to be set draw {}.{before}",
+            say::m(bed_m, 2),
+            say::m(surface_m, 2),
+            warmth(column.reading(surface_m).temperature_c),
+            warmth(column.reading(bed_m).temperature_c),
+            words(wanted)
+        ),
+        shows: Shows::Pool(PoolPicture {
+            elevation_unit: length.symbol().to_owned(),
+            ends: (length.from_si(bed_m), length.from_si(surface_m)),
+            temperature_unit: degree.symbol().to_owned(),
+            temperature: readings.iter().map(|(z, r)| (*z, degree.from_si(r.temperature_c))).collect(),
+            oxygen: readings.iter().filter_map(|(z, r)| Some((*z, r.oxygen_mg_l?))).collect(),
+            outlets: outlets.collect(),
+            zones,
+        }),
+    }
+}
+
+/// The release now, to be, and of the ranked mixes, against what the governing rule at the dam asks.
+fn ranges(context: &Context, answer: &NoteAnswer) -> Picture {
+    let site = context.site();
+    let degree = context.system.unit(Dimension::Temperature);
+    let at_dam = answer.mix.mix.targets.iter().filter_map(|standing| {
+        let rule = site.targets.get(standing.target)?;
+        (rule.point == DAM && rule.is_of_temperature() && rule.has_range()).then_some((standing.wish, rule))
+    });
+    let rule = at_dam.min_by_key(|(wish, rule)| (*wish, rule.priority)).map(|(_, rule)| rule);
+    let mut told: Vec<(String, f64, Option<(f64, f64)>)> = Vec::new();
+    if let Some((_, now)) = &answer.mix.now {
+        told.push(("now".to_owned(), now.release.temperature_c, now.spread.band_c()));
+    }
+    let mix = &answer.mix.mix;
+    let label = if answer.stands { "as set" } else { "to be set" };
+    told.push((label.to_owned(), mix.release.temperature_c, mix.spread.band_c()));
+    let ranked = answer.ranked.mixes.iter().take(MIXES).enumerate();
+    told.extend(ranked.map(|(at, shown): (usize, &Shown)| {
+        (format!("no. {}", at + 1), shown.temperature_c, shown.spread.band_c())
+    }));
+    // the ranked ones stand in a table
+    let own = told.iter().filter(|(label, ..)| !label.starts_with("no. "));
+    let words: Vec<String> = own.map(|(label, c, band)| format!("{label} {}", banded(*c, *band))).collect();
+    let asked =
+        rule.map_or_else(String::new, |rule| format!(" {} asks {}.", named(rule), super::words::asks(rule)));
+    let shown = |c: f64| degree.from_si(c);
+    Picture {
+        title: "The release against its target, beside the first ranked mixes".to_owned(),
+        words: format!("Release: {}.{asked}", words.join("; ")),
+        shows: Shows::Ranges(RangesPicture {
+            unit: degree.symbol().to_owned(),
+            asked: rule.map_or((None, None, None), |rule| {
+                (rule.low_c.map(shown), rule.preferred_c.map(shown), rule.high_c.map(shown))
+            }),
+            rows: told
+                .into_iter()
+                .map(|(label, c, band)| {
+                    (label, Some(shown(c)), band.map(|(low, high)| (shown(low), shown(high))))
+                })
+                .collect(),
+        }),
+    }
+}
+
+/// The release of every case over the season, with what the rules at the dam ask.
+fn days(context: &Context, answer: &NoteAnswer) -> Option<Picture> {
+    let season = answer.season.as_ref().ok()?;
+    let degree = context.system.unit(Dimension::Temperature);
+    let of = |day: &SeasonDay| Some((day.date, degree.from_si(day.release.as_ref()?.temperature_c)));
+    let cases = season.cases();
+    let line = |case: &&SeasonRun| (case.run.case.clone(), case.run.days.iter().filter_map(of).collect());
+    let reached = &season.main.outcome.reached;
+    let ends = |end: fn(&Reached) -> Option<f64>| -> Vec<(NaiveDate, f64)> {
+        reached.iter().filter_map(|r| Some((r.date, degree.from_si(end(r)?)))).collect()
+    };
+    let last = season.main.run.days.last()?.date;
+    let mut limits = spans("greatest asked", &ends(|r| r.range_c().1), last);
+    limits.extend(spans("least asked", &ends(|r| r.range_c().0), last));
+    let told = cases.iter().filter_map(|case| {
+        let days =
+            case.run.days.iter().filter_map(|day| Some((day.release.as_ref()?.temperature_c, day.date)));
+        let (warmest, on) = days.max_by(|a, b| a.0.total_cmp(&b.0))?;
+        Some(format!("{}: warmest release {} on {on}", case.run.case, warmth(warmest)))
+    });
+    Some(Picture {
+        title: "The release through the season in its cases".to_owned(),
+        words: format!("{}.", told.collect::<Vec<_>>().join("; ")),
+        shows: Shows::Days(DaysPicture {
+            axis: format!("release, {}", degree.symbol()),
+            bands: Vec::new(),
+            lines: cases.iter().map(line).collect(),
+            limits,
+            marks: vec![(season.decides, "change".to_owned())],
+        }),
+    })
+}
+
+/// Values that stay the same from one day of decision to the next, as spans.
+fn spans(
+    name: &str,
+    values: &[(NaiveDate, f64)],
+    last: NaiveDate,
+) -> Vec<(String, NaiveDate, NaiveDate, f64)> {
+    let mut out: Vec<(String, NaiveDate, NaiveDate, f64)> = Vec::new();
+    for (at, (from, value)) in values.iter().enumerate() {
+        let to = values.get(at + 1).map_or(last, |next| next.0);
+        match out.last_mut() {
+            Some(span) if span.3.total_cmp(value).is_eq() => span.2 = to,
+            _ => out.push((name.to_owned(), *from, to, *value)),
+        }
+    }
+    out
+}
