@@ -33,13 +33,13 @@ fn decide(folder: &Folder, more: &[&str]) {
 }
 
 /// Two gates on a well that takes one water or the other, at least some always.
-const WELL: &str = r#"wells: [ { name: North, conduit: 2 } ]
+const WELL: &str = r"wells: [ { name: North, conduit: 2 } ]
 outlets:
   - { name: N1, well: North, centre: 45, height: 3, width: 4, loss: 1.5, positions: [0, 50, 100] }
   - { name: N2, well: North, centre: 30, height: 3, width: 4, loss: 1.5, positions: [0, 50, 100] }
 now: { N1: 100%, North: 20 }
 release: { min: 5 }
-"#;
+";
 
 fn well(more: &str) -> Folder {
     let whole = small();

@@ -68,7 +68,8 @@ fn scenario_what_is_set_now_is_the_last_decision_and_the_same_by_the_site_file()
         assert!(matches!(now, SetNow::Flow(m3s) if (m3s - logged_m3s).abs() < 0.01), "{now:?} {logged_m3s}");
     }
     // read, and not written
-    let refused =
-        decide(&context, &Default::default(), DateTime::<Utc>::UNIX_EPOCH, &|_| ControlFlow::Continue(()));
+    let refused = decide(&context, &DecisionAsked::default(), DateTime::<Utc>::UNIX_EPOCH, &|_| {
+        ControlFlow::Continue(())
+    });
     assert!(format!("{refused:?}").contains("it has no log to write"), "{refused:?}");
 }

@@ -129,7 +129,7 @@ fn years(site: &Site) -> Years {
         let mut book = Vec::new();
         for step in 0..STEPS_A_DAY {
             let begins_s = f64::from(step) * step_s;
-            let moment = midnight + TimeDelta::seconds(begins_s as i64);
+            let moment = midnight + TimeDelta::hours(i64::from(step * (24 / STEPS_A_DAY)));
             let mut forcing = Forcing { ..forcing };
             if let Some((decided, made)) = at(moment) {
                 if decided.from() == moment {

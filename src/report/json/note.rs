@@ -4,6 +4,7 @@ use serde::Serialize;
 
 use crate::order::{Moved, NoOrder, Order, Stand, Step};
 use crate::report::caution;
+use crate::season::Exhausted;
 use crate::site::Site;
 use crate::tasks::Context;
 use crate::tasks::note::{NoteAnswer, StageChange, Subject};
@@ -100,7 +101,7 @@ pub fn note(context: &Context, answer: &NoteAnswer) -> String {
                 .outcome
                 .under_reserve
                 .as_ref()
-                .and_then(|r| r.on())
+                .and_then(Exhausted::on)
                 .map(|date| date.to_string()),
             days_outside: run.outcome.score.days_outside,
             worst_c: run.outcome.score.worst_c,

@@ -1,6 +1,6 @@
 //! The second sheet: the note to the agencies.
 
-use crate::mix::TargetStanding;
+use crate::mix::{Spread, TargetStanding};
 use crate::problem::Weight;
 use crate::record::METHOD;
 use crate::report::caution;
@@ -104,8 +104,8 @@ fn figures(way: &Way, place: Option<usize>) -> [String; 2] {
     match arriving.find(|(at, _)| at.point == point) {
         None => ["not known".to_owned(), "not known".to_owned()],
         Some((at, spread)) => [
-            banded(at.figures.mean_c, spread.and_then(|s| s.band_c())),
-            aired(at.figures.oxygen_mean_mg_l, spread.and_then(|s| s.band_oxygen_mg_l())),
+            banded(at.figures.mean_c, spread.and_then(Spread::band_c)),
+            aired(at.figures.oxygen_mean_mg_l, spread.and_then(Spread::band_oxygen_mg_l)),
         ],
     }
 }

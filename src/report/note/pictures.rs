@@ -100,6 +100,9 @@ fn pool(context: &Context, answer: &NoteAnswer) -> Picture {
     }
 }
 
+/// A release with its label and band, C.
+type Told = (String, f64, Option<(f64, f64)>);
+
 /// The release now, to be, and of the ranked mixes, against what the governing rule at the dam asks.
 fn ranges(context: &Context, answer: &NoteAnswer) -> Picture {
     let site = context.site();
@@ -109,7 +112,7 @@ fn ranges(context: &Context, answer: &NoteAnswer) -> Picture {
         (rule.point == DAM && rule.is_of_temperature() && rule.has_range()).then_some((standing.wish, rule))
     });
     let rule = at_dam.min_by_key(|(wish, rule)| (*wish, rule.priority)).map(|(_, rule)| rule);
-    let mut told: Vec<(String, f64, Option<(f64, f64)>)> = Vec::new();
+    let mut told: Vec<Told> = Vec::new();
     if let Some((_, now)) = &answer.mix.now {
         told.push(("now".to_owned(), now.release.temperature_c, now.spread.band_c()));
     }

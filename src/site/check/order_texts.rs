@@ -11,15 +11,15 @@ const MOST: usize = 12;
 pub(super) fn texts(raw: &Raw, problems: &mut Vec<Problem>) -> OrderTexts {
     let told = &raw.order;
     let one = |text: &Option<String>, key: &str, problems: &mut Vec<Problem>| {
-        text.as_deref().map(|text| sound(text, key.to_owned(), problems))
+        text.as_deref().map(|text| sound(text, key, problems))
     };
     let list = |texts: &[String], key: &str, problems: &mut Vec<Problem>| {
         few(texts.len(), key, problems);
-        texts.iter().enumerate().map(|(i, text)| sound(text, format!("{key}[{i}]"), problems)).collect()
+        texts.iter().enumerate().map(|(i, text)| sound(text, &format!("{key}[{i}]"), problems)).collect()
     };
     few(told.hold_points.len(), "hold_points", problems);
     let hold_points = told.hold_points.iter().enumerate().filter_map(|(i, (after, text))| {
-        let text = sound(text.as_deref()?, format!("hold_points[{i}].text"), problems);
+        let text = sound(text.as_deref()?, &format!("hold_points[{i}].text"), problems);
         let named = |name: &String| {
             let found = raw.outlets.iter().position(|o| o.name.as_ref() == Some(name));
             if found.is_none() {
@@ -46,7 +46,7 @@ pub(super) fn texts(raw: &Raw, problems: &mut Vec<Problem>) -> OrderTexts {
 }
 
 /// A text without blanks around it; an empty one and one that is too long are refused.
-fn sound(text: &str, key: String, problems: &mut Vec<Problem>) -> String {
+fn sound(text: &str, key: &str, problems: &mut Vec<Problem>) -> String {
     let text = text.trim();
     let length = text.chars().count();
     if length == 0 || length > LONGEST {

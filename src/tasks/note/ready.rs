@@ -38,7 +38,7 @@ impl Ready<'_> {
         match self.before {
             Err(why) => out.push(format!("nobody knows what is set now ({why})")),
             Ok(now) => {
-                out.extend(now.notes.iter().filter(|p| is_guessed(p)).map(|p| format!("now {}", p.words)))
+                out.extend(now.notes.iter().filter(|p| is_guessed(p)).map(|p| format!("now {}", p.words)));
             }
         }
         match self.order {

@@ -76,15 +76,17 @@ fn fastest_fall(stages: &[(f64, f64)]) -> f64 {
 
 #[cfg(test)]
 mod tests {
+    use approx::assert_relative_eq;
+
     use super::*;
 
     #[test]
     fn scenario_the_fall_of_any_hour_counts() {
         let before = f64::NEG_INFINITY;
-        assert_eq!(fastest_fall(&[(before, 3.0)]), 0.0);
-        assert_eq!(fastest_fall(&[(before, 3.0), (0.0, 4.0)]), 0.0);
-        assert_eq!(fastest_fall(&[(before, 3.0), (0.0, 2.5), (30.0, 2.0)]), 1.0);
+        assert_relative_eq!(fastest_fall(&[(before, 3.0)]), 0.0);
+        assert_relative_eq!(fastest_fall(&[(before, 3.0), (0.0, 4.0)]), 0.0);
+        assert_relative_eq!(fastest_fall(&[(before, 3.0), (0.0, 2.5), (30.0, 2.0)]), 1.0);
         // two an hour apart do not lie in one hour
-        assert_eq!(fastest_fall(&[(before, 3.0), (0.0, 2.5), (60.0, 2.0), (120.0, 1.25)]), 0.75);
+        assert_relative_eq!(fastest_fall(&[(before, 3.0), (0.0, 2.5), (60.0, 2.0), (120.0, 1.25)]), 0.75);
     }
 }

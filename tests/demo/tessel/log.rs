@@ -67,7 +67,7 @@ fn known(folder: &Path, site: &str, files: &BTreeMap<String, String>, at: NaiveD
         let text = match cast {
             Some(date) if date <= today => text.clone(),
             None if !name.contains('/') => {
-                text.lines().filter(is_known).map(|line| format!("{line}\n")).collect()
+                text.lines().filter(is_known).flat_map(|line| [line, "\n"]).collect()
             }
             _ => continue,
         };

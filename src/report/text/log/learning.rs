@@ -52,6 +52,6 @@ pub fn candidate(context: &Context, candidate: &Candidate) -> String {
         Verdict::Refused(why) => format!("refused: {why}"),
     };
     let told =
-        format!("{}: {value}, {} in {stretches} stretches{error}; {verdict}", effect.name(), count(*n),);
+        format!("{}: {value}, {} in {stretches} stretches{error}; {verdict}", effect.name(), count(*n));
     harmless(&in_system(&told, context.system))
 }

@@ -4,6 +4,7 @@
 
 use std::collections::BTreeMap;
 use std::sync::Arc;
+use std::time::Duration;
 
 use chrono::{NaiveDate, TimeDelta, Timelike};
 
@@ -70,6 +71,9 @@ impl Held<'_> {
     }
 }
 
+/// A figure of the readings of a day, each with its hour.
+type OfDay = dyn Fn(&[(f64, f64)]) -> Option<f64>;
+
 /// Every spell, by date.
 pub(super) fn spells(from: &From) -> Vec<Spell> {
     let held = held(from);
@@ -78,7 +82,7 @@ pub(super) fn spells(from: &From) -> Vec<Spell> {
         record.map(|record| by_day(from.context.site(), &record.temperature_c)).unwrap_or_default();
     let flows = record.map(|record| by_day(from.context.site(), &record.flow_m3s)).unwrap_or_default();
     let inside: Vec<&Held> = held.iter().filter(|held| held.beyond_c() <= 0.0).collect();
-    let usual = |of: &dyn Fn(&[(f64, f64)]) -> Option<f64>| {
+    let usual = |of: &OfDay| {
         let mut values: Vec<f64> =
             inside.iter().filter_map(|held| of(readings.get(&held.day.date)?)).collect();
         values.sort_by(f64::total_cmp);
@@ -241,8 +245,8 @@ fn step(from: &From, first: &Held, off_c: f64, readings: &Readings) -> Option<St
     let both: Vec<(f64, f64)> = hours(eve, 0.0).chain(hours(date, 24.0)).collect();
     let towards = jumps(&both).filter(|jump| jump.1 * off_c > 0.0);
     let (hour, by_c) = towards.reduce(|a, b| if b.1.abs() > a.1.abs() { b } else { a })?;
-    let minutes = (60.0 * hour).round() as i64;
-    let at = eve.and_hms_opt(0, 0, 0)?.checked_add_signed(TimeDelta::minutes(minutes))?;
+    let after = Duration::try_from_secs_f64(60.0 * (60.0 * hour).round()).ok()?;
+    let at = eve.and_hms_opt(0, 0, 0)?.checked_add_signed(TimeDelta::from_std(after).ok()?)?;
     let decided = from.known.iter().any(|known| known.date == at.date() && known.changed);
     Some(Step { at: at.format("%Y-%m-%d %H:%M").to_string(), by_c, decided })
 }
