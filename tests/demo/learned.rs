@@ -6,7 +6,7 @@ use std::ops::ControlFlow;
 use chrono::{DateTime, NaiveDate, Utc};
 use gatemix::record::{Effect, Verdict};
 use gatemix::site::SetNow;
-use gatemix::tasks::log::{decide, past};
+use gatemix::tasks::log::{DecisionAsked, decide, past};
 use gatemix::tasks::{Asked, Context, open};
 
 use super::demo::tessel::{MADE_LATE, TOO_WARM_C};
