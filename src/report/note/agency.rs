@@ -10,7 +10,7 @@ use crate::site::Site;
 use crate::tasks::Context;
 use crate::tasks::Freshness;
 use crate::tasks::note::{NoteAnswer, Subject, Unchecked};
-use crate::tasks::river::{Way, Which};
+use crate::tasks::river::{Timely, Way, Which};
 use crate::units::say;
 
 use super::words::{aired, asks, banded, dam, flow, gates, moment, named, percent, stands, subject};
@@ -27,6 +27,7 @@ pub(super) fn sheet(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
     }
     out.extend(expected(context, answer).map(Block::Table));
     out.extend(targets(context.site(), answer));
+    out.extend(ahead(context.site(), answer));
     out.extend(pictures::pictures(context, answer));
     out.extend(ranked::blocks(context, answer));
     out.extend(season::blocks(context, answer));
@@ -134,6 +135,28 @@ fn targets(site: &Site, answer: &NoteAnswer) -> Vec<Block> {
         rows,
         right: vec![3],
     })]
+}
+
+/// What is missed down the river in the days ahead, if the release is held.
+fn ahead(site: &Site, answer: &NoteAnswer) -> Option<Block> {
+    let points = site.river.as_ref().map_or(&[][..], |river| &river.points);
+    let way = answer.river.spoken()?.which;
+    let one = |t: &Timely| {
+        let (point, rule) = (points.get(t.point)?, site.targets.get(t.target)?);
+        let (on, _, by) = t.worst;
+        let by = if rule.statistic.is_sum() { format!("{by:.0} days") } else { say::dc(by, 1).to_string() };
+        let days = if t.days == 1 { "1 day".to_owned() } else { format!("{} days", t.days) };
+        Some(format!(
+            "at {} {} is missed for {days} from {}, by {by} on {}; a change must leave the dam by {}",
+            point.name,
+            rule.name,
+            t.day,
+            on,
+            moment(site, t.leave_by)
+        ))
+    };
+    let all: Vec<String> = answer.river.timely.iter().filter(|t| t.which == way).filter_map(one).collect();
+    (!all.is_empty()).then(|| Block::Warning(format!("If this release is held, {}.", all.join("; "))))
 }
 
 /// When it is decided again, and what would end it earlier.

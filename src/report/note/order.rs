@@ -2,24 +2,30 @@
 
 use chrono::{DateTime, FixedOffset, TimeDelta};
 
-use crate::mix::{Gate, Setting};
+use crate::mix::{Blend, Gate, Setting, TargetStanding};
 use crate::order::{Moved, NoOrder, Order, Stand, Step};
 use crate::report::caution;
 use crate::report::page::{Block, Table};
 use crate::site::{OrderTexts, Outlet, Site};
 use crate::tasks::Context;
-use crate::tasks::note::{NoteAnswer, StageChange, Unchecked};
+use crate::tasks::note::{NoteAnswer, StageChange, Subject, Unchecked};
 use crate::tasks::river::Which;
 use crate::units::say;
 
-use super::words::{dam, flow, flow_change, gates, moment, opening, room, stand, subject, warmth};
+use super::words::{
+    dam, flow, flow_change, gates, moment, named, opening, room, stand, stands, subject, warmth,
+};
 
 /// Labels of the lines to be signed where the site file names none (choice: roles, no names).
 const SIGN: [&str; 4] = ["Prepared by", "Ordered by", "Dam safety", "Carried out by"];
+/// A place in a table that is filled by hand.
+const TO_FILL: &str = "________";
 /// A stage that changes by less is left as it is, m (choice: a gauge shows no less).
 const SAME_STAGE_M: f64 = 0.005;
 /// Minutes whose seconds a clock time shows rounded.
 const MINUTE_S: f64 = 60.0;
+/// Flows nearer than this are one, m3/s (choice: no figure of the order shows less).
+const SAME_FLOW_M3S: f64 = 0.05;
 
 pub(super) fn sheet(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
     let site = context.site();
@@ -29,9 +35,8 @@ pub(super) fn sheet(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
         out.push(Block::List(answer.not_ready.clone()));
     }
     out.push(Block::Facts(facts(context, answer)));
-    if let Some(before) = &answer.before
-        && !answer.stands
-    {
+    // where there is no order of moves nothing stands there that looks like one
+    if let (Some(before), Some(Ok(_))) = (&answer.before, &answer.order) {
         out.push(Block::Table(difference(site, before, &answer.mix.setting)));
     }
     match &answer.order {
@@ -83,13 +88,17 @@ fn facts(context: &Context, answer: &NoteAnswer) -> Vec<(String, String)> {
     match &answer.before {
         _ if answer.stands => out.push(fact("Set", whole())),
         Some(before) => {
-            out.push(fact("Release", format!("now {}, to be {}", in_all(before), in_all(wanted))));
+            let way = answer.order.as_ref().and_then(|order| order.as_ref().ok()).and_then(|o| highest(o));
+            let way = way.map_or_else(String::new, |most| format!(", on the way up to {}", flow(most)));
+            out.push(fact("Release", format!("now {}{way}, to be {}", in_all(before), in_all(wanted))));
         }
         None => {
             out.push(fact("Set now", "NOT KNOWN".to_owned()));
             out.push(fact("To be set", whole()));
         }
     }
+    out.extend(logged(context, answer).map(|words| fact("Log", words)));
+    out.extend(missed(site, answer).map(|words| fact("Targets", words)));
     if !answer.stands {
         out.push(fact("Begins", format!("{}, not before", moment(site, answer.begins))));
     }
@@ -100,6 +109,46 @@ fn facts(context: &Context, answer: &NoteAnswer) -> Vec<(String, String)> {
         out.push(fact("Crew", format!("{:.1} crew hours{from}", change.moves.crew_hours)));
     }
     out
+}
+
+/// What the log says of the decision: that it was amended, or that one is due again.
+fn logged(context: &Context, answer: &NoteAnswer) -> Option<String> {
+    let decided = context.standing()?;
+    let (id, until) = (decided.id, decided.decision.until);
+    match answer.subject {
+        Subject::Decision(of) if of == id => {
+            let amended = match decided.amended {
+                0 => None,
+                1 => Some("amended once".to_owned()),
+                times => Some(format!("amended {times} times")),
+            };
+            let again = until.map(|until| format!("to be decided again by {until}"));
+            let words: Vec<String> = amended.into_iter().chain(again).collect();
+            (!words.is_empty()).then(|| format!("decision {id}: {}", words.join(", ")))
+        }
+        _ => until
+            .filter(|_| decided.is_overdue(context.on.date_naive()))
+            .map(|until| format!("decision {id} was to be decided again by {until}: it holds no longer")),
+    }
+}
+
+/// Targets that are missed or unknown.
+fn missed(site: &Site, answer: &NoteAnswer) -> Option<String> {
+    let row = |standing: &TargetStanding| {
+        let rule = site.targets.get(standing.target)?;
+        Some(format!("{}: {}", named(rule), stands(standing, rule)))
+    };
+    let unlike = |standing: &&TargetStanding| standing.missed() || standing.unknown(site);
+    let all: Vec<String> = answer.mix.mix.targets.iter().filter(unlike).filter_map(row).collect();
+    (!all.is_empty()).then(|| all.join("; "))
+}
+
+/// The greatest flow after a step, m3/s, where it is greater than before and in the end.
+fn highest(order: &Order) -> Option<f64> {
+    let of = |release: Option<Blend>| release.map_or(0.0, |release| release.flow_m3s);
+    let ends = of(order.before).max(of(order.after));
+    let most = order.steps.iter().map(|step| of(step.after)).fold(0.0, f64::max);
+    (most > ends + SAME_FLOW_M3S).then_some(most)
 }
 
 /// Every gate that is open before or after: now, wanted, difference.
@@ -136,11 +185,12 @@ fn moves(site: &Site, order: &Order, begins: DateTime<FixedOffset>) -> Table {
             what(site, step),
             moved_stand(site, step.moved, step.from),
             moved_stand(site, step.moved, step.to),
+            TO_FILL.to_owned(),
         ]
     };
     Table {
-        caption: "Moves, one after the other; no step before its time".to_owned(),
-        head: ["Step", "Not before", "Move", "From", "To"].map(str::to_owned).to_vec(),
+        caption: "Moves, one after the other; if a step is late, all after it are as much later".to_owned(),
+        head: ["Step", "Not before", "Move", "From", "To", "Done at"].map(str::to_owned).to_vec(),
         rows: order.steps.iter().zip(1..).map(row).collect(),
         right: vec![0],
     }
@@ -192,9 +242,12 @@ fn moved_stand(site: &Site, moved: Moved, at: Stand) -> String {
 
 /// What is expected after each step.
 fn expected(site: &Site, before: Option<&Setting>, order: &Order) -> Table {
-    let water = |of: Option<crate::mix::Blend>| match of {
+    let water = |of: Option<Blend>| match of {
         None => ["nothing flows".to_owned(), "-".to_owned()],
-        Some(of) => [flow(of.flow_m3s), warmth(of.temperature_c)],
+        Some(of) => {
+            let oxygen = of.oxygen_below_mg_l.map_or_else(String::new, |mg_l| format!(", {mg_l:.1} mg/L"));
+            [flow(of.flow_m3s), warmth(of.temperature_c) + &oxygen]
+        }
     };
     let heads = |heads_m: &[(usize, f64)]| {
         let one = |(well, head_m): &(usize, f64)| {
@@ -222,7 +275,7 @@ fn expected(site: &Site, before: Option<&Setting>, order: &Order) -> Table {
         caption:
             "Expected after each step: what leaves the dam, head over the wells, the limit that comes nearest"
                 .to_owned(),
-        head: ["Step", "Release", "Temperature", "Head", "Nearest limit"].map(str::to_owned).to_vec(),
+        head: ["Step", "Release", "Temperature, oxygen", "Head", "Nearest limit"].map(str::to_owned).to_vec(),
         rows: std::iter::once(now).chain(order.steps.iter().zip(1..).map(row)).collect(),
         right: vec![0],
     }
@@ -243,7 +296,8 @@ fn kept(site: &Site) -> String {
             .to_owned();
     }
     format!(
-        "The times keep the changes allowed: {}. What a crew needs for a gate comes on top.",
+        "The times keep the changes allowed: {}. A step that is done late puts off those after it, so that as much time \
+         lies between. What a crew needs for a gate comes on top.",
         told.join(", ")
     )
 }
@@ -279,7 +333,7 @@ fn down_the_river(context: &Context, answer: &NoteAnswer, order: &Order) -> Vec<
             at(there.map(|at| at.rise_first_h), 0.0),
             at(there.map(|at| at.rise_h), last_min),
             at(there.map(|at| at.travel_h), last_min),
-            point.warning_h.map_or_else(|| "________".to_owned(), |hours| format!("{hours:.1} h before")),
+            point.warning_h.map_or_else(|| TO_FILL.to_owned(), |hours| format!("{hours:.1} h before")),
         ])
     };
     let rows: Vec<Vec<String>> = answer.stages.iter().filter_map(row).collect();

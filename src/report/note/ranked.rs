@@ -24,6 +24,9 @@ pub(super) fn blocks(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
     let mixes = &answer.ranked.mixes;
     let chosen = mixes.iter().position(|shown| is_chosen(site, answer, shown));
     out.push(Block::Words(place(answer, chosen)));
+    if let Some(none) = answer.ranked.nothing_fits() {
+        out.push(Block::Warning(format!("{}.", sentence(none.words()))));
+    }
     let rows: Vec<Vec<String>> =
         mixes.iter().enumerate().take(MIXES).map(|(i, shown)| row(site, answer, (i, shown))).collect();
     if !rows.is_empty() {
@@ -46,6 +49,12 @@ pub(super) fn blocks(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
         out.push(Block::List(rejected));
     }
     out
+}
+
+/// Words as they begin a sentence.
+fn sentence(words: &str) -> String {
+    let mut letters = words.chars();
+    letters.next().map_or_else(String::new, |first| first.to_uppercase().chain(letters).collect())
 }
 
 /// Where the mix of the note stands in the ranking.

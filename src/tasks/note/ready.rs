@@ -5,6 +5,7 @@ use chrono::{DateTime, FixedOffset};
 use crate::mix::limits::{Check, Group};
 use crate::order::{NoOrder, Order};
 use crate::problem::{Problem, Weight};
+use crate::record::line::Event;
 use crate::site::Site;
 use crate::tasks::{Context, Freshness, MixAnswer, Understood};
 use crate::units::say;
@@ -47,6 +48,7 @@ impl Ready<'_> {
             None => {}
         }
         out.extend(cannot);
+        out.extend(self.lasting());
         out.extend(self.as_warned("not-a-position"));
         let weighty: Vec<String> =
             self.not_checked.iter().filter(|one| one.weighs()).map(Unchecked::words).collect();
@@ -55,7 +57,7 @@ impl Ready<'_> {
             out.push(format!("{words}: {}", weighty.join("; ")));
         }
         out.extend(self.falls());
-        out.extend(unsure(site));
+        out.extend(unsure(site, self.mix));
         out.extend(self.stale());
         if let Some(change) = &self.mix.change
             && let Some(day) = change.earliest.filter(|day| *day > self.begins.date_naive())
@@ -91,7 +93,7 @@ impl Ready<'_> {
             let broken =
                 self.mix.mix.limits.iter().filter(|c| c.broken() && is_hard(c)).copied().collect::<Vec<_>>();
             out.extend(missed(site, &broken));
-            out.extend(unsure(site));
+            out.extend(unsure(site, self.mix));
             out.extend(self.stale());
         }
         let kept = |p: &&Problem| {
@@ -105,6 +107,16 @@ impl Ready<'_> {
         out.extend(self.context.profile.flags.iter().filter(kept).map(|p| p.words.clone()));
         out.dedup();
         out
+    }
+
+    /// Events of the log that last when the change begins: a gate that failed may be one of those to move.
+    fn lasting(&self) -> impl Iterator<Item = String> {
+        let date = self.begins.date_naive();
+        let events = self.context.log.log.events().into_iter();
+        let lasts = move |event: &&Event| {
+            event.from.date_naive() <= date && event.until.is_none_or(|until| date <= until)
+        };
+        events.filter(lasts).map(|event| format!("event {} of the log lasts: {}", event.id, event.text))
     }
 
     /// Points whose stage would fall faster than it may.
@@ -155,8 +167,14 @@ fn is_hard(check: &Check) -> bool {
 }
 
 /// Gates of which nobody is sure how they stand.
-fn unsure(site: &Site) -> Option<String> {
-    let names: Vec<&str> = site.outlets.iter().filter(|o| o.uncertain).map(|o| o.name.as_str()).collect();
+fn unsure(site: &Site, mix: &MixAnswer) -> Option<String> {
+    let stands = |index: usize| {
+        let gate = mix.setting.gates.iter().find(|gate| gate.outlet == index);
+        if gate.is_some_and(|gate| gate.opening > 0.0) { "open" } else { "shut" }
+    };
+    let of = site.outlets.iter().enumerate().filter(|(_, outlet)| outlet.uncertain);
+    let names: Vec<String> =
+        of.map(|(index, outlet)| format!("{} (taken as {})", outlet.name, stands(index))).collect();
     (!names.is_empty())
         .then(|| format!("positions are not confirmed of {}: look before the first step", names.join(", ")))
 }
