@@ -1,5 +1,7 @@
 //! The second sheet: the note to the agencies.
 
+use std::collections::BTreeSet;
+
 use crate::mix::{Spread, TargetStanding};
 use crate::problem::Weight;
 use crate::record::METHOD;
@@ -9,7 +11,7 @@ use crate::report::text::learned::applied_words;
 use crate::site::Site;
 use crate::tasks::Context;
 use crate::tasks::Freshness;
-use crate::tasks::note::{NoteAnswer, Subject, Unchecked};
+use crate::tasks::note::{NoteAnswer, Subject};
 use crate::tasks::river::{Timely, Way, Which};
 use crate::units::say;
 
@@ -72,13 +74,15 @@ fn expected(context: &Context, answer: &NoteAnswer) -> Option<Table> {
         let [warm, air] = figures(way, place);
         let mut row = vec![name.to_owned(), warm, air];
         if let Some(now) = now {
-            row.extend(figures(now, place));
+            let [warm, _] = figures(now, place);
+            // without its band, which is much like the other's
+            row.push(warm.split(" [").next().unwrap_or_default().to_owned());
         }
         row
     };
     let mut head = vec!["Place".to_owned(), "Temperature".to_owned(), "Oxygen".to_owned()];
     if now.is_some() {
-        head.extend(["Temperature before".to_owned(), "Oxygen before".to_owned()]);
+        head.push("Temperature before".to_owned());
     }
     Some(Table {
         caption: "Expected, means of a day; brackets hold 10-90 % of our perturbed cases".to_owned(),
@@ -208,8 +212,9 @@ fn data(context: &Context, answer: &NoteAnswer) -> Vec<String> {
     });
     out.push(learned(context, answer));
     if !answer.not_checked.is_empty() {
-        let all: Vec<String> = answer.not_checked.iter().map(Unchecked::words).collect();
-        out.push(format!("Limits not checked: {}.", all.join("; ")));
+        let names: BTreeSet<&str> = answer.not_checked.iter().map(|one| one.rule.name()).collect();
+        let names: Vec<&str> = names.into_iter().collect();
+        out.push(format!("Limits not checked, by outlet in the change order: {}.", names.join(", ")));
     }
     let cautions = answer.cautions.iter().take(CAUTIONS).map(|words| format!("{words}."));
     out.extend(cautions);

@@ -9,7 +9,7 @@ use crate::tasks::Context;
 use crate::tasks::note::{NoteAnswer, Subject};
 use crate::tasks::rank::Shown;
 
-use super::words::{aired, banded, flow, opening, percent, sorted};
+use super::words::{aired, flow, opening, percent, sorted, warmth};
 
 /// Ranked mixes told (choice: the note is to fit a page).
 const MIXES: usize = 4;
@@ -82,8 +82,9 @@ fn row(site: &Site, answer: &NoteAnswer, (at, shown): (usize, &Shown)) -> Vec<St
     vec![
         format!("{}{mark}", at + 1),
         gates(site, &shown.day),
-        banded(shown.temperature_c, shown.spread.band_c()),
-        aired(shown.oxygen_mg_l, shown.spread.band_oxygen_mg_l()),
+        // their bands stand in the picture
+        warmth(shown.temperature_c),
+        aired(shown.oxygen_mg_l, None),
         percent(shown.governing().and_then(|standing| standing.share_inside_both)),
         shown.change.as_ref().map_or_else(|| "-".to_owned(), |change| change.moves.count.to_string()),
         why,
