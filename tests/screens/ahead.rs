@@ -135,6 +135,7 @@ fn invented(question: SeasonQuestion) -> Ahead {
     let others: Vec<SeasonRun> = others.chain([season(&context, other, &case, &strategy)]).collect();
     let begins = context.on.date_naive();
     let answer = SeasonAnswer {
+        without: None,
         main,
         others,
         begins,
