@@ -1,5 +1,7 @@
 //! Scores, spells outside the band, what is learned, the hindcast: in the words of the command.
 
+use crate::problem::harmless;
+use crate::report::text::learned::{applied, learned_yaml};
 use crate::report::text::log::{hindcast, learning, left_out, scores, spell};
 use crate::tasks::Context;
 use crate::tasks::log::Past;
@@ -27,7 +29,7 @@ pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
         }
         LogPage::Learned => (
             "What the record teaches; only the site file applies it. l or Esc goes back.",
-            |context, past| vec![("", learning(context, past))],
+            |context, past| taught(context, past),
         ),
         LogPage::Hindcast => ("The season gone through again; h or Esc goes back.", |context, past| {
             let notes = past.notes.iter().map(|note| note.advice(context.system));
@@ -63,6 +65,17 @@ pub(super) fn lines(screen: &Screen, width: usize) -> Lines {
         say(&mut out, nothing(screen.session.log.page), width, 2, Role::Plain);
     }
     out
+}
+
+/// What can be learned, what the site file applies, and the lines that would.
+fn taught(context: &Context, past: &Past) -> Parts {
+    let (site, system) = (context.site(), context.system);
+    let lines = learned_yaml(site, &past.learning).unwrap_or_default();
+    vec![
+        ("", learning(context, past)),
+        ("What is applied", applied(site, system).into_iter().collect()),
+        ("For site.yaml; nothing was written", lines.lines().map(harmless).collect()),
+    ]
 }
 
 /// What is said where a page has nothing to tell.
