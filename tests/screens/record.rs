@@ -106,7 +106,11 @@ pub(crate) fn invented() -> Past {
     let turned = |(id, from, to): (u64, u64, u64)| Turned {
         id,
         days: (date(from), date(to)),
-        places: vec![("dam".to_owned(), score((to - from) as usize, 0.2, 12), score(12, 0.1, 12))],
+        places: vec![(
+            "dam".to_owned(),
+            score(usize::try_from(to - from).unwrap(), 0.2, 12),
+            score(12, 0.1, 12),
+        )],
     };
     let scores = |bias: f64| Scores {
         all: score(63, bias, 59),

@@ -82,7 +82,7 @@ fn compare(system: System, name: &str) {
         let row = line(&text, &format!("{}  2026", turned["decision"]));
         match at["bias"].as_f64() {
             Some(_) => {
-                holds(row, &[difference(&at["bias"]), format!("{}/{}", at["inside"], at["with_band"])])
+                holds(row, &[difference(&at["bias"]), format!("{}/{}", at["inside"], at["with_band"])]);
             }
             None => holds(row, &["no gauge".to_owned()]),
         }

@@ -88,7 +88,7 @@ fn facts(context: &Context, answer: &NoteAnswer) -> Vec<(String, String)> {
     match &answer.before {
         _ if answer.stands => out.push(fact("Set", whole())),
         Some(before) => {
-            let way = answer.order.as_ref().and_then(|order| order.as_ref().ok()).and_then(|o| highest(o));
+            let way = answer.order.as_ref().and_then(|order| order.as_ref().ok()).and_then(highest);
             let way = way.map_or_else(String::new, |most| format!(", on the way up to {}", flow(most)));
             out.push(fact("Release", format!("now {}{way}, to be {}", in_all(before), in_all(wanted))));
         }
