@@ -25,6 +25,7 @@ mod rank;
 mod rank_answers;
 mod records;
 mod refused;
+mod report;
 mod river;
 mod season;
 mod season_days;

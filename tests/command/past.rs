@@ -37,7 +37,7 @@ fn release(folder: &Folder, set: &[&str]) -> f64 {
 }
 
 /// Two casts of one water, the gauge of the days between them.
-fn folder() -> (Folder, [f64; 3]) {
+pub(crate) fn folder() -> (Folder, [f64; 3]) {
     let later = with(CAST, "2025-07-14", "2025-07-28");
     let air =
         "season: { layer: 4, decide_days: 14, monthly: { air: 20, humidity: 60, wind: 2.5, cloud: 40 } }\n";
