@@ -5,6 +5,7 @@
 
 mod agency;
 mod both;
+mod head;
 mod order;
 mod pictures;
 mod ranked;

@@ -2,19 +2,18 @@
 
 use chrono::{DateTime, FixedOffset, TimeDelta};
 
-use crate::mix::{Blend, Gate, Setting, TargetStanding};
+use crate::mix::{Blend, Gate, Setting};
 use crate::order::{Moved, NoOrder, Order, Stand, Step};
 use crate::report::caution;
 use crate::report::page::{Block, Table};
 use crate::site::{OrderTexts, Outlet, Site};
 use crate::tasks::Context;
-use crate::tasks::note::{NoteAnswer, StageChange, Subject, Unchecked};
+use crate::tasks::note::{NoteAnswer, StageChange, Unchecked};
 use crate::tasks::river::Which;
 use crate::units::say;
 
-use super::words::{
-    dam, flow, flow_change, gates, moment, named, opening, room, stand, stands, subject, warmth,
-};
+use super::head;
+use super::words::{flow, flow_change, moment, opening, room, stand, warmth};
 
 /// Labels of the lines to be signed where the site file names none (choice: roles, no names).
 const SIGN: [&str; 4] = ["Prepared by", "Ordered by", "Dam safety", "Carried out by"];
@@ -24,9 +23,6 @@ const TO_FILL: &str = "________";
 const SAME_STAGE_M: f64 = 0.005;
 /// Minutes whose seconds a clock time shows rounded.
 const MINUTE_S: f64 = 60.0;
-/// Flows nearer than this are one, m3/s (choice: no figure of the order shows less).
-const SAME_FLOW_M3S: f64 = 0.05;
-
 pub(super) fn sheet(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
     let site = context.site();
     let mut out = vec![Block::Heading(1, "Change order".to_owned())];
@@ -34,7 +30,7 @@ pub(super) fn sheet(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
         out.push(Block::Warning("NOT READY FOR SIGNATURE:".to_owned()));
         out.push(Block::List(answer.not_ready.clone()));
     }
-    out.push(Block::Facts(facts(context, answer)));
+    out.push(Block::Facts(head::facts(context, answer)));
     // where there is no order of moves nothing stands there that looks like one
     if let (Some(before), Some(Ok(_))) = (&answer.before, &answer.order) {
         out.push(Block::Table(difference(site, before, &answer.mix.setting)));
@@ -66,89 +62,6 @@ pub(super) fn sheet(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
     }
     out.push(Block::Words(caution().to_owned()));
     out
-}
-
-fn facts(context: &Context, answer: &NoteAnswer) -> Vec<(String, String)> {
-    let site = context.site();
-    let fact = |label: &str, value: String| (label.to_owned(), value);
-    let datum = site.datum.name();
-    let mut out = vec![
-        fact("Dam", dam(site)),
-        fact("Pool", format!("{} above {datum}", say::m(context.profile.pool_m, 2))),
-        fact("Order of", subject(answer)),
-    ];
-    out.extend(site.order.to.clone().map(|to| fact("To", to)));
-    let in_all = |setting: &Setting| {
-        let flows = setting.gates.iter().chain(&setting.leaks).map(|gate| gate.flow_m3s);
-        flow(flows.sum())
-    };
-    let wanted = &answer.mix.setting;
-    let whole = || format!("{}; in all {}", gates(site, wanted), in_all(wanted));
-    // what is set now and what is to be stand in a table below, where both are known
-    match &answer.before {
-        _ if answer.stands => out.push(fact("Set", whole())),
-        Some(before) => {
-            let way = answer.order.as_ref().and_then(|order| order.as_ref().ok()).and_then(highest);
-            let way = way.map_or_else(String::new, |most| format!(", on the way up to {}", flow(most)));
-            out.push(fact("Release", format!("now {}{way}, to be {}", in_all(before), in_all(wanted))));
-        }
-        None => {
-            out.push(fact("Set now", "NOT KNOWN".to_owned()));
-            out.push(fact("To be set", whole()));
-        }
-    }
-    out.extend(logged(context, answer).map(|words| fact("Log", words)));
-    out.extend(missed(site, answer).map(|words| fact("Targets", words)));
-    if !answer.stands {
-        out.push(fact("Begins", format!("{}, not before", moment(site, answer.begins))));
-    }
-    if let Some(change) =
-        answer.mix.change.as_ref().filter(|change| change.moves.crew_hours > 0.0 && !answer.stands)
-    {
-        let from = change.earliest.map_or_else(String::new, |day| format!("; the crew can come from {day}"));
-        out.push(fact("Crew", format!("{:.1} crew hours{from}", change.moves.crew_hours)));
-    }
-    out
-}
-
-/// What the log says of the decision: that it was amended, or that one is due again.
-fn logged(context: &Context, answer: &NoteAnswer) -> Option<String> {
-    let decided = context.standing()?;
-    let (id, until) = (decided.id, decided.decision.until);
-    match answer.subject {
-        Subject::Decision(of) if of == id => {
-            let amended = match decided.amended {
-                0 => None,
-                1 => Some("amended once".to_owned()),
-                times => Some(format!("amended {times} times")),
-            };
-            let again = until.map(|until| format!("to be decided again by {until}"));
-            let words: Vec<String> = amended.into_iter().chain(again).collect();
-            (!words.is_empty()).then(|| format!("decision {id}: {}", words.join(", ")))
-        }
-        _ => until
-            .filter(|_| decided.is_overdue(context.on.date_naive()))
-            .map(|until| format!("decision {id} was to be decided again by {until}: it holds no longer")),
-    }
-}
-
-/// Targets that are missed or unknown.
-fn missed(site: &Site, answer: &NoteAnswer) -> Option<String> {
-    let row = |standing: &TargetStanding| {
-        let rule = site.targets.get(standing.target)?;
-        Some(format!("{}: {}", named(rule), stands(standing, rule)))
-    };
-    let unlike = |standing: &&TargetStanding| standing.missed() || standing.unknown(site);
-    let all: Vec<String> = answer.mix.mix.targets.iter().filter(unlike).filter_map(row).collect();
-    (!all.is_empty()).then(|| all.join("; "))
-}
-
-/// The greatest flow after a step, m3/s, where it is greater than before and in the end.
-fn highest(order: &Order) -> Option<f64> {
-    let of = |release: Option<Blend>| release.map_or(0.0, |release| release.flow_m3s);
-    let ends = of(order.before).max(of(order.after));
-    let most = order.steps.iter().map(|step| of(step.after)).fold(0.0, f64::max);
-    (most > ends + SAME_FLOW_M3S).then_some(most)
 }
 
 /// Every gate that is open before or after: now, wanted, difference.
