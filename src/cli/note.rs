@@ -9,6 +9,7 @@ use clap::{Args, ValueEnum};
 use crate::files::atomic;
 use crate::problem::{Problem, harmless};
 use crate::report::page;
+use crate::tasks::Failure;
 use crate::tasks::note::NoteAsked;
 use crate::tasks::rank::RankAsked;
 
@@ -55,6 +56,13 @@ impl Piece {
     pub(super) fn written(&self, page: &page::Page) -> Result<String, Stop> {
         let ending = self.out.as_deref().and_then(Path::extension).and_then(|ending| ending.to_str());
         let by_ending = ending.and_then(|ending| Format::from_str(ending, true).ok());
+        if let (None, None, Some(ending)) = (self.format, by_ending, ending) {
+            let words = format!(
+                "--out: nothing is written as .{}; end it in .md, .txt or .html, or name --format",
+                harmless(ending)
+            );
+            return Err(Failure::Usage(words).into());
+        }
         let format = self.format.or(by_ending).unwrap_or(Format::Txt);
         let text = page::written(page, format.into());
         let Some(path) = &self.out else { return Ok(text) };

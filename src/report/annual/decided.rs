@@ -50,7 +50,7 @@ fn row(context: &Context, answer: &ReportAnswer, decided: &Decided) -> Vec<Strin
         decided.id.to_string(),
         turned.map_or_else(String::new, |turned| span(turned.days)),
         format!("{}{amended}", decided.decision.by),
-        gates(&decided.decision.chosen, system),
+        gates(context.site(), &decided.decision.chosen, system),
         decided.decision.why.clone(),
         turned.map_or_else(|| "no gauge".to_owned(), |turned| came(turned, system)),
     ]

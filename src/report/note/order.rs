@@ -21,6 +21,8 @@ const SIGN: [&str; 4] = ["Prepared by", "Ordered by", "Dam safety", "Carried out
 const TO_FILL: &str = "________";
 /// A stage that changes by less is left as it is, m (choice: a gauge shows no less).
 const SAME_STAGE_M: f64 = 0.005;
+/// Releases nearer than this are told as one, C (choice: no figure of the order shows less).
+const SAME_C: f64 = 0.05;
 /// Minutes whose seconds a clock time shows rounded.
 const MINUTE_S: f64 = 60.0;
 pub(super) fn sheet(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
@@ -39,6 +41,7 @@ pub(super) fn sheet(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
         Some(Ok(order)) => {
             out.push(Block::Table(moves(site, order, answer.begins)));
             out.push(Block::Table(expected(site, answer.before.as_ref(), order)));
+            out.extend(otherwise(answer, order).map(Block::Words));
             out.push(Block::Words(kept(site)));
             out.extend(down_the_river(context, answer, order));
             out.extend(by_hand(site, order));
@@ -123,13 +126,17 @@ fn what(site: &Site, step: &Step) -> String {
     if step.stop {
         return format!("stop the water of {name}, so that a gate can move");
     }
-    let rises = |from: f64, to: f64| if to > from { ("open", "raise") } else { ("shut", "lower") };
-    let (gate, water) = match (step.moved, step.from.opening.zip(step.to.opening)) {
-        (Moved::Gate(_), Some((from, to))) => rises(from, to),
-        _ => rises(step.from.flow_m3s, step.to.flow_m3s),
-    };
+    let water = if step.to.flow_m3s > step.from.flow_m3s { "raise" } else { "lower" };
     match step.moved {
-        Moved::Gate(_) => format!("{gate} {name}"),
+        Moved::Gate(_) => {
+            let [from, to] = [step.from, step.to].map(|stand| stand.opening.unwrap_or_default());
+            match (from > 0.0, to > 0.0) {
+                (_, false) => format!("shut {name}"),
+                (false, true) => format!("open {name}"),
+                (true, true) if to > from => format!("open {name} further"),
+                (true, true) => format!("shut {name} partly"),
+            }
+        }
         Moved::Outlet(_) if step.from.flow_m3s <= 0.0 => format!("open {name}"),
         Moved::Outlet(_) if step.to.flow_m3s <= 0.0 => format!("shut {name}"),
         Moved::Outlet(_) => format!("{water} {name}"),
@@ -194,6 +201,19 @@ fn expected(site: &Site, before: Option<&Setting>, order: &Order) -> Table {
     }
 }
 
+/// That the gates as they stand share a well otherwise than its flows are given, where the release shows it.
+fn otherwise(answer: &NoteAnswer, order: &Order) -> Option<String> {
+    let given = answer.mix.now.as_ref()?.1.release.temperature_c;
+    let shared = order.before?.temperature_c;
+    ((given - shared).abs() >= SAME_C).then(|| {
+        format!(
+            "Now is told as the openings share the flow of a well; with the flows as they were given the release now \
+             is {}.",
+            warmth(given)
+        )
+    })
+}
+
 /// The rates of change that the times keep.
 fn kept(site: &Site) -> String {
     let limits = &site.limits;
@@ -255,7 +275,7 @@ fn down_the_river(context: &Context, answer: &NoteAnswer, order: &Order) -> Vec<
     }
     vec![Block::Table(Table {
         caption:
-            "Down the river: first possible arrival counted from step 1, bulk and water from the last step"
+            "Down the river: first possible arrival counted from step 1; bulk and water from the last step, of steps before it earlier"
                 .to_owned(),
         head: ["Point", "Stage", "First possible", "Bulk of the change", "Its water", "Warning"]
             .map(str::to_owned)

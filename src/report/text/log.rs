@@ -160,10 +160,11 @@ fn body(site: &Site, decision: &Decision, system: System) -> Vec<(&'static str, 
         _ = write!(from, ", or when {}", harmless(trigger));
     }
     let mut out =
-        vec![("", from), ("Why", harmless(&decision.why)), ("Set", gates(&decision.chosen, system))];
+        vec![("", from), ("Why", harmless(&decision.why)), ("Set", gates(site, &decision.chosen, system))];
     out.extend(decision.expected.iter().map(|expected| ("Expected", expected_words(expected, system))));
     if !decision.considered.is_empty() {
-        let first: Vec<String> = decision.considered.iter().take(3).map(|c| considered(c, system)).collect();
+        let first: Vec<String> =
+            decision.considered.iter().take(3).map(|c| considered(site, c, system)).collect();
         out.push(("Ranked", first.join("; ")));
     }
     let known = &decision.known;
@@ -180,9 +181,18 @@ fn body(site: &Site, decision: &Decision, system: System) -> Vec<(&'static str, 
 }
 
 /// Gates with their flows and openings.
-pub fn gates(gates: &Gates, system: System) -> String {
+pub fn gates(site: &Site, gates: &Gates, system: System) -> String {
+    // of what is set by its flow alone nobody told how far it is open
+    let by_flow = |name: &str| {
+        let outlet = site.outlets.iter().find(|outlet| outlet.name == name);
+        outlet.is_some_and(|outlet| outlet.well.is_none() && outlet.positions.is_empty())
+    };
     let one = |(name, &flow_m3s): (&String, &f64)| {
-        let open = gates.open.get(name).map_or_else(String::new, |percent| format!(" at {percent:.0}%"));
+        let open = gates
+            .open
+            .get(name)
+            .filter(|_| !by_flow(name))
+            .map_or_else(String::new, |percent| format!(" at {percent:.0}%"));
         format!("{} {}{open}", harmless(name), flow(flow_m3s, system))
     };
     let all: Vec<String> = gates.set.iter().map(one).collect();
@@ -204,13 +214,13 @@ fn expected_words(expected: &Expected, system: System) -> String {
     format!("at {}: {out}", harmless(&expected.point))
 }
 
-fn considered(mix: &Considered, system: System) -> String {
+fn considered(site: &Site, mix: &Considered, system: System) -> String {
     let outside = if mix.outside.is_empty() {
         String::new()
     } else {
         format!(", outside {}", harmless(&mix.outside.join(", ")))
     };
-    format!("{} = {}{outside}", gates(&mix.gates, system), temperature(mix.temperature_c, system))
+    format!("{} = {}{outside}", gates(site, &mix.gates, system), temperature(mix.temperature_c, system))
 }
 
 /// An event in one line.

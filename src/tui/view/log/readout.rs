@@ -84,7 +84,7 @@ fn stood(screen: &Screen, day: &PastDay, width: usize, out: &mut Lines) {
     let words = format!(
         "decision {} since {since}: {}",
         decided.id,
-        gates(&decided.decision.chosen, screen.system())
+        gates(screen.session.context().site(), &decided.decision.chosen, screen.system())
     );
     say(out, &words, width, 2, Role::Plain);
     say(out, &format!("why: {}", harmless(&decided.decision.why)), width, 2, Role::Quiet);
