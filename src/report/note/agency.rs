@@ -9,13 +9,14 @@ use crate::report::caution;
 use crate::report::page::{Block, Table};
 use crate::report::text::learned::applied_words;
 use crate::site::Site;
+use crate::target::Target;
 use crate::tasks::Context;
 use crate::tasks::Freshness;
 use crate::tasks::note::{NoteAnswer, Subject};
 use crate::tasks::river::{Timely, Way, Which};
 use crate::units::say;
 
-use super::words::{aired, asks, banded, dam, flow, gates, moment, named, percent, stands, subject};
+use super::words::{aired, asks, banded, flow, gates, moment, named, percent, stands, subject};
 use super::{pictures, ranked, season};
 
 /// Cautions told before the rest is counted (choice: the note is to fit a page).
@@ -35,7 +36,7 @@ pub(super) fn sheet(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
     out.extend(season::blocks(context, answer));
     out.extend(next(context, answer));
     out.push(Block::Heading(2, "What it rests on".to_owned()));
-    out.push(Block::List(data(context, answer)));
+    out.push(Block::Words(data(context, answer).join(" ")));
     out.push(Block::Words(caution().to_owned()));
     out
 }
@@ -44,7 +45,6 @@ fn facts(context: &Context, answer: &NoteAnswer) -> Vec<(String, String)> {
     let site = context.site();
     let release = &answer.mix.mix.release;
     let mut out = vec![
-        ("Dam".to_owned(), dam(site)),
         ("Written for".to_owned(), format!("{} ({})", moment(site, context.on), context.on_from.words())),
         ("Of".to_owned(), subject(answer)),
     ];
@@ -117,25 +117,38 @@ fn figures(way: &Way, place: Option<usize>) -> [String; 2] {
 
 /// How it stands against every target of the date.
 fn targets(site: &Site, answer: &NoteAnswer) -> Vec<Block> {
+    let source = |rule: &Target| rule.source.clone().unwrap_or_else(|| "no source given".to_owned());
+    let rules = answer.mix.mix.targets.iter().filter_map(|standing| site.targets.get(standing.target));
+    let sources: BTreeSet<String> = rules.map(source).collect();
+    // one source of all is told once
+    let same = sources.first().filter(|_| sources.len() == 1);
     let row = |standing: &TargetStanding| {
         let rule = site.targets.get(standing.target)?;
         let wish = if standing.wish { " (a wish)" } else { "" };
         let governs = if standing.governs { "; governs" } else { "" };
-        Some(vec![
+        let mut row = vec![
             format!("{}{wish}", named(rule)),
             asks(rule),
             format!("{}{governs}", stands(standing, rule)),
             percent(standing.share_inside_both.or(standing.share_inside)),
-            rule.source.clone().unwrap_or_else(|| "no source given".to_owned()),
-        ])
+        ];
+        row.extend(same.is_none().then(|| source(rule)));
+        Some(row)
     };
     let rows: Vec<Vec<String>> = answer.mix.mix.targets.iter().filter_map(row).collect();
     if rows.is_empty() {
         return vec![Block::Words("No target is valid on this date.".to_owned())];
     }
     vec![Block::Table(Table {
-        caption: "Against the targets of this date; the share inside is of our perturbed cases".to_owned(),
-        head: ["Target", "Asks", "Stands", "Inside", "Source"].map(str::to_owned).to_vec(),
+        caption: format!(
+            "Against the targets of this date; the share inside is of our perturbed cases{}",
+            same.map_or_else(String::new, |source| format!("; source: {source}"))
+        ),
+        head: ["Target", "Asks", "Stands", "Inside", "Source"]
+            .into_iter()
+            .take(if same.is_some() { 4 } else { 5 })
+            .map(str::to_owned)
+            .collect(),
         rows,
         right: vec![3],
     })]

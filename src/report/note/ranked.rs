@@ -12,7 +12,7 @@ use crate::tasks::rank::Shown;
 use super::words::{aired, flow, opening, percent, sorted, warmth};
 
 /// Ranked mixes told (choice: the note is to fit a page).
-const MIXES: usize = 4;
+const MIXES: usize = 3;
 /// Limits told that reject mixes (choice).
 const LIMITS: usize = 4;
 /// Flows nearer than this share of the whole are one (choice).
@@ -45,8 +45,10 @@ pub(super) fn blocks(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
     }
     let rejected = rejected(site, &answer.ranked.ranking.rejected);
     if !rejected.is_empty() {
-        out.push(Block::Words("Rejected by limits, each with the nearest miss:".to_owned()));
-        out.push(Block::List(rejected));
+        out.push(Block::Words(format!(
+            "Rejected by limits, each with the nearest miss: {}.",
+            rejected.join("; ")
+        )));
     }
     out
 }

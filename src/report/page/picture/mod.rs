@@ -22,9 +22,9 @@ pub(super) struct Size {
 /// A picture over the whole width of the page.
 pub(super) const ALONE: Size = Size { wide: 186.0, high: 85.0 };
 /// One of two side by side.
-pub(super) const PAIRED: Size = Size { wide: 91.0, high: 52.0 };
+pub(super) const PAIRED: Size = Size { wide: 91.0, high: 50.0 };
 /// The odd one below pairs.
-pub(super) const BELOW: Size = Size { wide: 186.0, high: 46.0 };
+pub(super) const BELOW: Size = Size { wide: 186.0, high: 38.0 };
 
 /// The picture as an SVG element with its title and words. `None` where it holds nothing that can be drawn, so that
 /// only its words are told.
