@@ -1,4 +1,4 @@
-//! Results to text, JSON and CSV, as pure functions.
+//! Results to text, JSON, CSV and written pieces, as pure functions.
 
 pub mod annual;
 mod column;
@@ -6,6 +6,7 @@ pub mod csv;
 pub mod json;
 pub mod note;
 pub mod page;
+mod pooled;
 mod sentence;
 pub mod text;
 

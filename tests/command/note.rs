@@ -326,3 +326,32 @@ fn scenario_what_cannot_be_understood_and_what_gives_no_note() {
     let out = note(&none, &[]);
     assert!(out.failed_with(3).contains("nothing to write a note of"), "{}", out.err);
 }
+
+#[test]
+fn scenario_what_lasts_by_the_log_stands_before_the_signatures() {
+    let folder = usual();
+    let why = "N1 hoist failed";
+    let event = ["log", folder.named(), "--event", why, "--by", "A. Crew", "--until"];
+    let told = "event 1 of the log lasts: N1 hoist failed";
+    assert!(!said(&folder, &[]).contains(told));
+    assert_eq!(run(&[&event[..], &["open"]].concat()).code, Some(0));
+    let words = said(&folder, &[]);
+    let (before, _) = words.split_once("Moves, one after the other").unwrap();
+    assert!(before.contains("NOT READY FOR SIGNATURE") && before.contains(told), "{before}");
+    // once it is over it keeps nobody
+    assert_eq!(run(&[&event[..], &["2025-07-14", "--amend", "1"]].concat()).code, Some(0));
+    assert!(!said(&folder, &["--at", "2025-07-15T08:00"]).contains(told));
+}
+
+#[test]
+fn scenario_the_greatest_flow_on_the_way_is_told_and_no_other_format_is_written() {
+    let folder = usual();
+    // what opens goes before what shuts, so the flow is greater between than before and after
+    let swapped = said(&folder, &["--set", "N1=20", "--set", "Sluice=15"]);
+    assert!(swapped.contains("now 35.0 m3/s (1,236 cfs), on the way up to 45.0 m3/s"), "{swapped}");
+    let more = said(&folder, &["--set", "N1=30", "--set", "Sluice=15"]);
+    assert!(!more.contains("on the way up to"), "the end is the greatest: {more}");
+    let out = folder.path().join("note.pdf");
+    let refused = note(&folder, &["--out", out.to_str().unwrap()]);
+    assert!(refused.failed_with(2).contains(".md, .txt or .html") && !out.exists(), "{}", refused.err);
+}

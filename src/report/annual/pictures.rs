@@ -2,7 +2,8 @@
 
 use chrono::NaiveDate;
 
-use crate::report::page::{Block, DaysPicture, Picture, PoolPicture, Shows};
+use crate::report::page::{Block, DaysPicture, Picture, Shows};
+use crate::report::pooled::pooled;
 use crate::report::text::log::{apart, signed};
 use crate::target::{DAM, Statistic};
 use crate::tasks::Context;
@@ -11,9 +12,6 @@ use crate::tasks::report::ReportAnswer;
 use crate::units::{Dimension, show};
 
 use super::pictured;
-
-/// Heights at which the curves of the pool are read (choice).
-const HEIGHTS: usize = 90;
 
 /// The gauge by day over the expected band, the targets of daily means at the dam, and the decisions; none where neither
 /// gauge nor computing tells a day.
@@ -94,17 +92,13 @@ fn limits(context: &Context, answer: &ReportAnswer) -> Vec<(String, NaiveDate, N
 /// The pool by the cast that the report is made with.
 pub(super) fn pool(context: &Context) -> Block {
     let (site, column, system) = (context.site(), &context.profile.column, context.system);
-    let (length, degree) = (system.unit(Dimension::Length), system.unit(Dimension::Temperature));
     let (bed_m, surface_m) = (column.bed_m(), column.surface_m());
-    let heights = (0..=HEIGHTS).map(|k| bed_m + (surface_m - bed_m) * k as f64 / HEIGHTS as f64);
-    let readings: Vec<_> = heights.map(|z_m| (length.from_si(z_m), column.reading(z_m))).collect();
-    let set = context.standing().map(|decided| &decided.decision.chosen.set);
-    let outlets = site.outlets.iter().map(|outlet| {
-        let part = outlet.open_part(1.0);
-        let [low, top] = [part.top_m - part.height_m, part.top_m].map(|z_m| length.from_si(z_m));
-        let is_open = set.and_then(|set| set.get(&outlet.name)).is_some_and(|flow_m3s| *flow_m3s > 0.0);
-        (outlet.name.clone(), low, top, is_open)
-    });
+    let set = context.standing().map(|decided| &decided.decision.chosen);
+    let opening = |index: usize| {
+        let (set, name) = (set?, &site.outlets.get(index)?.name);
+        set.set.get(name).filter(|flow_m3s| **flow_m3s > 0.0)?;
+        Some(set.open.get(name).map_or(1.0, |percent| percent / 100.0))
+    };
     let warm = |z_m: f64| show(column.reading(z_m).temperature_c, Dimension::Temperature, system, 1);
     pictured(Picture {
         title: format!("The pool at the cast of {}", super::data::taken(context)),
@@ -115,14 +109,6 @@ pub(super) fn pool(context: &Context) -> Block {
             warm(surface_m),
             warm(bed_m)
         ),
-        shows: Shows::Pool(PoolPicture {
-            elevation_unit: length.symbol().to_owned(),
-            ends: (length.from_si(bed_m), length.from_si(surface_m)),
-            temperature_unit: degree.symbol().to_owned(),
-            temperature: readings.iter().map(|(z, r)| (*z, degree.from_si(r.temperature_c))).collect(),
-            oxygen: readings.iter().filter_map(|(z, r)| Some((*z, r.oxygen_mg_l?))).collect(),
-            outlets: outlets.collect(),
-            zones: Vec::new(),
-        }),
+        shows: Shows::Pool(pooled(context, opening, Vec::new())),
     })
 }

@@ -3,7 +3,8 @@
 use chrono::NaiveDate;
 
 use crate::mix::Drawn;
-use crate::report::page::{Block, DaysPicture, Picture, PoolPicture, RangesPicture, Shows};
+use crate::report::page::{Block, DaysPicture, Picture, RangesPicture, Shows};
+use crate::report::pooled::pooled;
 use crate::season::{Reached, SeasonDay};
 use crate::target::DAM;
 use crate::tasks::Context;
@@ -14,8 +15,6 @@ use crate::units::{Dimension, say};
 
 use super::words::{banded, named, warmth};
 
-/// Heights at which the curves of the pool are read (choice).
-const HEIGHTS: usize = 90;
 /// Ranked mixes drawn (choice).
 const MIXES: usize = 4;
 
@@ -26,20 +25,14 @@ pub(super) fn pictures(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
 
 /// The pool from bed to surface with its outlets, and the zones now and to be.
 fn pool(context: &Context, answer: &NoteAnswer) -> Picture {
-    let (site, column, system) = (context.site(), &context.profile.column, context.system);
-    let (length, degree) = (system.unit(Dimension::Length), system.unit(Dimension::Temperature));
+    let (site, column) = (context.site(), &context.profile.column);
+    let length = context.system.unit(Dimension::Length);
     let (bed_m, surface_m) = (column.bed_m(), column.surface_m());
-    let heights = (0..=HEIGHTS).map(|k| bed_m + (surface_m - bed_m) * k as f64 / HEIGHTS as f64);
-    let readings: Vec<_> = heights.map(|z| (length.from_si(z), column.reading(z))).collect();
-    let open = |outlet: usize| {
-        answer.mix.setting.gates.iter().find(|gate| gate.outlet == outlet && gate.flow_m3s > 0.0)
+    let opening = |outlet: usize| {
+        let gate =
+            answer.mix.setting.gates.iter().find(|gate| gate.outlet == outlet && gate.flow_m3s > 0.0)?;
+        Some(gate.opening)
     };
-    let outlets = site.outlets.iter().enumerate().map(|(index, outlet)| {
-        let gate = open(index);
-        let part = outlet.open_part(gate.map_or(1.0, |gate| gate.opening));
-        let ends = [part.top_m - part.height_m, part.top_m].map(|z| length.from_si(z));
-        (outlet.name.clone(), ends[0], ends[1], gate.is_some())
-    });
     let zones_of = |levels: &[Drawn], when: &str| -> Vec<(String, f64, f64)> {
         let of = |drawn: &Drawn| {
             let zone = drawn.zone?;
@@ -88,15 +81,7 @@ fn pool(context: &Context, answer: &NoteAnswer) -> Picture {
             warmth(column.reading(bed_m).temperature_c),
             words(wanted)
         ),
-        shows: Shows::Pool(PoolPicture {
-            elevation_unit: length.symbol().to_owned(),
-            ends: (length.from_si(bed_m), length.from_si(surface_m)),
-            temperature_unit: degree.symbol().to_owned(),
-            temperature: readings.iter().map(|(z, r)| (*z, degree.from_si(r.temperature_c))).collect(),
-            oxygen: readings.iter().filter_map(|(z, r)| Some((*z, r.oxygen_mg_l?))).collect(),
-            outlets: outlets.collect(),
-            zones,
-        }),
+        shows: Shows::Pool(pooled(context, opening, zones)),
     }
 }
 
