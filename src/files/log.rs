@@ -203,7 +203,11 @@ fn one(text: &[u8]) -> Result<Line, Problem> {
         Ok(_) => {
             Err(Problem::flag("log-line", format!("the line cannot be used: {error}"), "it is left as it is"))
         }
-        Err(_) => Err(torn()),
+        Err(ends) if ends.is_eof() && text.starts_with(b"{") => Err(torn()),
+        Err(_) => {
+            let words = "the line is no JSON, so nothing in this log";
+            Err(Problem::flag("log-line", words, "take it out, or mend it; it is left as it is"))
+        }
     }
 }
 

@@ -170,3 +170,10 @@ pub struct Event {
     /// The event that this line amends.
     pub amends: Option<u64>,
 }
+
+impl Event {
+    /// Whether it lasts on a day.
+    pub fn covers(&self, date: NaiveDate) -> bool {
+        self.from.date_naive() <= date && self.until.is_none_or(|until| date <= until)
+    }
+}

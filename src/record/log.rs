@@ -127,9 +127,7 @@ impl Log {
 
     /// The event that makes a day tell nothing, where one does.
     pub fn event_on(&self, date: NaiveDate) -> Option<&Event> {
-        let covers =
-            |event: &&Event| event.from.date_naive() <= date && event.until.is_none_or(|until| date <= until);
-        self.events().into_iter().find(covers)
+        self.events().into_iter().find(|event| event.covers(date))
     }
 }
 

@@ -1,7 +1,10 @@
-//! What was learned and is applied: what an answer would be without it, and what to know of it.
+//! What the record does to an answer: what is learned and applied and what it would be without that, events that last.
+
+use chrono::NaiveDate;
 
 use crate::mix::{Mix, Plain, Spread, groups};
 use crate::problem::Problem;
+use crate::record::line::Event;
 
 use super::Context;
 
@@ -42,8 +45,25 @@ impl Without {
 }
 
 impl Context {
-    /// What to know of what was learned: a window that lies long ago, levels that no bias is given for.
-    pub fn learned_flags(&self) -> Vec<Problem> {
+    /// Events of the log that last on a day: a gate that failed may be one of those chosen.
+    pub fn lasting(&self, date: NaiveDate) -> impl Iterator<Item = &Event> {
+        self.log.log.events().into_iter().filter(move |event| event.covers(date))
+    }
+
+    /// What the record has to say of an answer: events that last, what is applied of it and was learned long ago or not
+    /// of every level.
+    pub fn record_flags(&self) -> Vec<Problem> {
+        let event = |event: &Event| {
+            let words = format!("event {} of the log lasts: {}", event.id, event.text);
+            let cure = format!("once it is over: gatemix log --event TEXT --amend {} --until DATE", event.id);
+            Problem::flag("event", words, cure)
+        };
+        let mut out: Vec<Problem> = self.lasting(self.on.date_naive()).map(event).collect();
+        out.extend(self.learned_flags());
+        out
+    }
+
+    fn learned_flags(&self) -> Vec<Problem> {
         let site = self.site();
         let Some(learned) = site.learned() else { return Vec::new() };
         let mut out = Vec::new();

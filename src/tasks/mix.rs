@@ -84,7 +84,7 @@ fn answer(
     };
     mix.warnings.extend(understood.notes);
     mix.warnings.extend(context.rules_off());
-    mix.warnings.extend(context.learned_flags());
+    mix.warnings.extend(context.record_flags());
     let (now, why_not) = judged_now(context, perturbed, &understood.setting);
     mix.warnings.extend(why_not);
     let change = now.as_ref().map(|(now, was)| {

@@ -26,6 +26,9 @@ const LETTERS: [(char, Dimension); 8] = [
     ('D', Dimension::TemperatureDifference),
 ];
 
+/// Digits of a volume that has been converted (choice: a table of storage knows no more).
+const MEASURED: f64 = 4.0;
+
 /// A piece of a text.
 #[derive(Debug, Clone, Copy)]
 enum Piece<'a> {
@@ -119,6 +122,15 @@ impl Said {
         Some(if self.signed && above_zero { format!("+{figure}") } else { figure })
     }
 
+    /// The same as a figure converted for this system: a volume without the digits that nobody measured.
+    fn converted(self, system: System) -> Self {
+        let volume = LETTERS.iter().find(|known| **known == (self.letter, Dimension::Volume));
+        let Some(unit) = volume.map(|(_, dimension)| system.unit(*dimension)) else { return self };
+        let value = unit.from_si(self.value_si);
+        let step = 10_f64.powf((value.abs().max(1.0).log10().floor() + 1.0 - MEASURED).max(0.0));
+        Self { value_si: unit.to_si((value / step).round() * step), ..self }
+    }
+
     /// The figure, or that of a range which it begins.
     fn up_to(self, end: Option<Self>, system: System) -> String {
         let figure = self.shown(system).unwrap_or_default();
@@ -197,7 +209,8 @@ pub fn in_both(text: &str, first: System) -> String {
             }
             _ => None,
         };
-        let [one, other] = [first, second].map(|system| said.up_to(end, system));
+        let one = said.up_to(end, first);
+        let other = said.converted(second).up_to(end.map(|end| end.converted(second)), second);
         _ = write!(out, "{one} ({other})");
     }
     out
@@ -321,6 +334,10 @@ mod tests {
         );
         let three = format!("{} to {} to {}", dc(1.0, 0), dc(2.0, 0), dc(3.0, 0).signed());
         assert_eq!(in_both(&three, System::Si), "1 to 2 C (2 to 4 F) to +3 C (+5 F)");
+        // a converted volume tells no more than a table of storage knows; the reader's own stays as it is
+        let volume = m3(49_339_274.0, 0).to_string();
+        assert_eq!(in_both(&volume, System::Us), "40,000 acre-ft (49,340,000 m3)");
+        assert_eq!(in_both(&volume, System::Si), "49,339,274 m3 (40,000 acre-ft)");
     }
 
     #[test]

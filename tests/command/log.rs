@@ -158,7 +158,7 @@ fn scenario_lines_that_cannot_be_used_are_told_with_their_line_and_left() {
     let path = folder.path().join("log.jsonl");
     let mut text = fs::read_to_string(&path).unwrap();
     text.push_str(
-        "{\"line\":\"hindsight\",\"id\":7,\"new\":[1,2]}\n{\"line\":\"decision\",\"id\":8}\nnot JSON\n",
+        "{\"line\":\"hindsight\",\"id\":7,\"new\":[1,2]}\n{\"line\":\"decision\",\"id\":8}\nnot JSON\n{\"line\":\"event\",\"id\":9,\"te\n",
     );
     fs::write(&path, &text).unwrap();
     let told = run(&["log", folder.named(), "--json"]).json();
@@ -168,9 +168,9 @@ fn scenario_lines_that_cannot_be_used_are_told_with_their_line_and_left() {
         .iter()
         .map(|p| (p["kind"].as_str().unwrap(), p["line"].as_u64().unwrap()))
         .collect();
-    assert_eq!(told, [("log-newer", 2), ("log-line", 3), ("log-torn", 4)]);
+    assert_eq!(told, [("log-newer", 2), ("log-line", 3), ("log-line", 4), ("log-torn", 5)]);
     let words = run(&["log", folder.named()]).out;
-    assert!(words.contains("log-line (line 3)") && words.contains("log-torn (line 4)"), "{words}");
+    assert!(words.contains("log-line (line 3)") && words.contains("log-torn (line 5)"), "{words}");
     // the next line is written after them, and they are kept
     assert_eq!(decide(&folder, &["--set", "N1=21"]).code, Some(0));
     assert!(fs::read_to_string(&path).unwrap().starts_with(&text));

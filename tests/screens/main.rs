@@ -14,9 +14,11 @@ mod keys;
 mod logged;
 mod noted;
 mod numbers;
+mod pooled;
 mod prices;
 #[cfg(unix)]
 mod pty;
+mod ranked;
 mod record;
 mod screens;
 mod seasons;

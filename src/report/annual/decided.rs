@@ -56,14 +56,14 @@ fn row(context: &Context, answer: &ReportAnswer, decided: &Decided) -> Vec<Strin
     ]
 }
 
-/// `+0.5 C on the mean of 7 days, 5 of 7 inside the band`
+/// `+0.5 C on the mean of 7 days, 5 of 7 inside the band it wrote`
 fn came(turned: &Turned, system: System) -> String {
     let Some((_, warmth, breath)) = turned.places.iter().find(|place| place.0 == DAM) else {
         return "no gauge".to_owned();
     };
     let one = |score: &Score, bias: &dyn Fn(f64) -> String| {
         let misfit = score.misfit?;
-        let inside = format!(", {} of {} inside the band", score.inside, score.with_band);
+        let inside = format!(", {} of {} inside the band it wrote", score.inside, score.with_band);
         let inside = if score.with_band > 0 { inside } else { String::new() };
         Some(format!("{} on the mean of {}{inside}", bias(misfit.bias), count(score.n)))
     };

@@ -2,16 +2,18 @@
 
 use std::collections::BTreeSet;
 
+use crate::mix::limits::Group;
 use crate::mix::{Spread, TargetStanding};
 use crate::problem::Weight;
 use crate::record::METHOD;
 use crate::report::caution;
 use crate::report::page::{Block, Table};
-use crate::report::text::learned::applied_words;
+use crate::report::text::learned::{applied_words, values};
 use crate::site::Site;
 use crate::target::Target;
 use crate::tasks::Context;
 use crate::tasks::Freshness;
+use crate::tasks::log::Skill;
 use crate::tasks::note::{NoteAnswer, Subject};
 use crate::tasks::river::{Timely, Way, Which};
 use crate::units::say;
@@ -223,9 +225,12 @@ fn data(context: &Context, answer: &NoteAnswer) -> Vec<String> {
         }
         None => "No weather is told.".to_owned(),
     });
-    out.push(learned(context, answer));
-    if !answer.not_checked.is_empty() {
-        let names: BTreeSet<&str> = answer.not_checked.iter().map(|one| one.rule.name()).collect();
+    out.push(foreseen(&answer.skill));
+    out.extend(learned(context, answer));
+    // what a change costs the crew is the order's
+    let unchecked = answer.not_checked.iter().filter(|one| one.rule.group() != Group::Convenience);
+    let names: BTreeSet<&str> = unchecked.map(|one| one.rule.name()).collect();
+    if !names.is_empty() {
         let names: Vec<&str> = names.into_iter().collect();
         out.push(format!("Limits not checked, by outlet in the change order: {}.", names.join(", ")));
     }
@@ -237,17 +242,41 @@ fn data(context: &Context, answer: &NoteAnswer) -> Vec<String> {
     // the season has more inputs, its plans
     let inputs = answer.season.as_ref().map_or(&context.fingerprint, |season| &season.fingerprint);
     out.push(format!(
-        "gatemix {}, {METHOD}; inputs {inputs}. An honest resolution without a record of the site is about {}.",
+        "gatemix {}, {METHOD}; inputs {inputs}.",
         env!("CARGO_PKG_VERSION"),
-        say::dc(1.0, 1)
     ));
     out
 }
 
+/// How well the release of past days was foreseen.
+fn foreseen(skill: &Skill) -> String {
+    let Some(misfit) = skill.temperature.misfit else {
+        return format!(
+            "No past day can be held against the gauge below the dam: an honest resolution is about {}.",
+            say::dc(1.0, 1)
+        );
+    };
+    format!(
+        "On {} days held against the gauge below the dam it read {} beside what is computed with nothing learned, {} \
+         root mean square, inside the band of the day on {} of {}.",
+        skill.temperature.n,
+        say::dc(misfit.bias, 2).signed(),
+        say::dc(misfit.rmse, 2),
+        skill.temperature.inside,
+        skill.temperature.with_band
+    )
+}
+
 /// What was learned of the gauge and is applied, and what is expected without it.
-fn learned(context: &Context, answer: &NoteAnswer) -> String {
+fn learned(context: &Context, answer: &NoteAnswer) -> Option<String> {
     let Some(applied) = applied_words(context.site()) else {
-        return "Nothing learned of the gauge is applied.".to_owned();
+        let learned = &answer.skill.learning.learned;
+        let unused = values(context.site(), learned);
+        return match (learned.has_effect(), answer.skill.temperature.misfit) {
+            (true, _) => Some(format!("This teaches {unused}; none of it is applied to this note.")),
+            (false, Some(_)) => Some("Nothing learned of it is applied.".to_owned()),
+            (false, None) => None,
+        };
     };
     let without = answer.mix.without.as_ref().map(|without| {
         let warm = banded(without.temperature_c, without.spread.band_c());
@@ -256,7 +285,7 @@ fn learned(context: &Context, answer: &NoteAnswer) -> String {
             aired(without.oxygen_mg_l, without.spread.band_oxygen_mg_l())
         )
     });
-    format!("Learned of the gauge: {applied}{}.", without.unwrap_or_default())
+    Some(format!("Learned of the gauge: {applied}{}.", without.unwrap_or_default()))
 }
 
 /// What was recorded in the river, and to when.

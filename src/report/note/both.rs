@@ -25,6 +25,7 @@ pub(super) fn in_both_units(page: Page, first: System) -> Page {
         Block::Table(of) => Block::Table(table(of)),
         Block::Blanks(labels) => Block::Blanks(all(labels)),
         Block::Picture(of) => Block::Picture(Box::new(picture(*of))),
+        Block::Beside(of, drawn) => Block::Beside(table(of), Box::new(picture(*drawn))),
         Block::Sheet => Block::Sheet,
     };
     Page { title: both(page.title), blocks: page.blocks.into_iter().map(block).collect() }

@@ -10,17 +10,14 @@ use crate::target::DAM;
 use crate::tasks::Context;
 use crate::tasks::note::NoteAnswer;
 use crate::tasks::rank::Shown;
-use crate::tasks::season::SeasonRun;
+use crate::tasks::season::{SeasonAnswer, SeasonRun};
 use crate::units::{Dimension, say};
 
+use super::ranked::{MIXES, is_chosen};
 use super::words::{banded, named, warmth};
 
-/// Ranked mixes drawn (choice).
-const MIXES: usize = 4;
-
 pub(super) fn pictures(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
-    let all = [Some(pool(context, answer)), Some(ranges(context, answer)), days(context, answer)];
-    all.into_iter().flatten().map(|picture| Block::Picture(Box::new(picture))).collect()
+    [pool(context, answer), ranges(context, answer)].map(|one| Block::Picture(Box::new(one))).into()
 }
 
 /// The pool from bed to surface with its outlets, and the zones now and to be.
@@ -104,13 +101,14 @@ fn ranges(context: &Context, answer: &NoteAnswer) -> Picture {
     let mix = &answer.mix.mix;
     let label = if answer.stands { "as set" } else { "to be set" };
     told.push((label.to_owned(), mix.release.temperature_c, mix.spread.band_c()));
+    let words: Vec<String> =
+        told.iter().map(|(label, c, band)| format!("{label} {}", banded(*c, *band))).collect();
+    // the ranked ones stand in a table too; that of the note is drawn already
     let ranked = answer.ranked.mixes.iter().take(MIXES).enumerate();
-    told.extend(ranked.map(|(at, shown): (usize, &Shown)| {
+    let others = ranked.filter(|(_, shown)| !is_chosen(site, answer, shown));
+    told.extend(others.map(|(at, shown): (usize, &Shown)| {
         (format!("no. {}", at + 1), shown.temperature_c, shown.spread.band_c())
     }));
-    // the ranked ones stand in a table
-    let own = told.iter().filter(|(label, ..)| !label.starts_with("no. "));
-    let words: Vec<String> = own.map(|(label, c, band)| format!("{label} {}", banded(*c, *band))).collect();
     let asked =
         rule.map_or_else(String::new, |rule| format!(" {} asks {}.", named(rule), super::words::asks(rule)));
     let shown = |c: f64| degree.from_si(c);
@@ -133,8 +131,7 @@ fn ranges(context: &Context, answer: &NoteAnswer) -> Picture {
 }
 
 /// The release of every case over the season, with what the rules at the dam ask.
-fn days(context: &Context, answer: &NoteAnswer) -> Option<Picture> {
-    let season = answer.season.as_ref().ok()?;
+pub(super) fn days(context: &Context, season: &SeasonAnswer) -> Option<Picture> {
     let degree = context.system.unit(Dimension::Temperature);
     let of = |day: &SeasonDay| Some((day.date, degree.from_si(day.release.as_ref()?.temperature_c)));
     let cases = season.cases();

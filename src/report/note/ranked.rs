@@ -6,15 +6,15 @@ use crate::rank::Rejected;
 use crate::report::page::{Block, Table};
 use crate::site::Site;
 use crate::tasks::Context;
-use crate::tasks::note::{NoteAnswer, Subject};
+use crate::tasks::note::NoteAnswer;
 use crate::tasks::rank::Shown;
 
 use super::words::{aired, flow, opening, percent, sorted, warmth};
 
 /// Ranked mixes told (choice: the note is to fit a page).
-const MIXES: usize = 3;
+pub(super) const MIXES: usize = 3;
 /// Limits told that reject mixes (choice).
-const LIMITS: usize = 4;
+const LIMITS: usize = 3;
 /// Flows nearer than this share of the whole are one (choice).
 const SAME_FLOW: f64 = 0.005;
 
@@ -23,7 +23,7 @@ pub(super) fn blocks(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
     let mut out = vec![Block::Heading(2, "Considered and rejected".to_owned())];
     let mixes = &answer.ranked.mixes;
     let chosen = mixes.iter().position(|shown| is_chosen(site, answer, shown));
-    out.push(Block::Words(place(answer, chosen)));
+    out.extend(place(answer, chosen).map(Block::Words));
     if let Some(none) = answer.ranked.nothing_fits() {
         out.push(Block::Warning(format!("{}.", sentence(none.words()))));
     }
@@ -33,10 +33,12 @@ pub(super) fn blocks(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
         let of = answer.ranked.blocks.iter().map(|(share, flow)| share * flow).sum();
         out.push(Block::Table(Table {
             caption: format!(
-                "First ranked mixes of {}; the share inside is of our perturbed cases",
-                flow(of)
+                "First ranked mixes of {}, by {}{}",
+                flow(of),
+                order(answer),
+                if chosen.is_some_and(|at| at < MIXES) { "; * is that of this note" } else { "" }
             ),
-            head: ["No.", "Gates", "Temperature", "Oxygen", "Inside", "Moves", "Why not before"]
+            head: ["No.", "Gates", "Temperature", "Oxygen", "Inside", "Moves", "Behind the one before by"]
                 .map(str::to_owned)
                 .to_vec(),
             rows,
@@ -46,7 +48,7 @@ pub(super) fn blocks(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
     let rejected = rejected(site, &answer.ranked.ranking.rejected);
     if !rejected.is_empty() {
         out.push(Block::Words(format!(
-            "Rejected by limits, each with the nearest miss: {}.",
+            "Rejected by, with the nearest miss: {}.",
             rejected.join("; ")
         )));
     }
@@ -59,25 +61,25 @@ fn sentence(words: &str) -> String {
     letters.next().map_or_else(String::new, |first| first.to_uppercase().chain(letters).collect())
 }
 
-/// Where the mix of the note stands in the ranking.
-fn place(answer: &NoteAnswer, chosen: Option<usize>) -> String {
+/// What the ranking counts, first to last.
+fn order(answer: &NoteAnswer) -> String {
     let order: Vec<&str> = answer.ranked.order.iter().map(|criterion| criterion.name()).collect();
-    let order = order.join(", ").replace('_', " ");
-    match (answer.subject, chosen) {
-        _ if answer.ranked.mixes.is_empty() => "Every mix examined breaks a limit.".to_owned(),
-        (Subject::FirstRanked, _) | (_, Some(0)) => {
-            format!("The mix of this note is the first ranked. Counted first to last: {order}.")
-        }
-        (_, Some(at)) => {
-            format!("The mix of this note is no. {} of the ranking. Counted first to last: {order}.", at + 1)
-        }
-        (_, None) => format!("The mix of this note is none of those listed. Counted first to last: {order}."),
+    format!("{} in this order", order.join(", ").replace('_', " "))
+}
+
+/// Where the mix of the note stands in the ranking; `None` where the table marks it.
+fn place(answer: &NoteAnswer, chosen: Option<usize>) -> Option<String> {
+    match chosen {
+        _ if answer.ranked.mixes.is_empty() => Some("Every mix examined breaks a limit.".to_owned()),
+        Some(at) if at < MIXES => None,
+        Some(at) => Some(format!("The mix of this note is no. {} of the ranking.", at + 1)),
+        None => Some("The mix of this note is none of those ranked first.".to_owned()),
     }
 }
 
 fn row(site: &Site, answer: &NoteAnswer, (at, shown): (usize, &Shown)) -> Vec<String> {
     let why = match shown.reasons.last() {
-        Some(why) if at > 0 => why.clone(),
+        Some(why) if at > 0 => why.strip_prefix("behind the one before by ").unwrap_or(why).to_owned(),
         _ => "first".to_owned(),
     };
     let mark = if is_chosen(site, answer, shown) { " *" } else { "" };
@@ -132,8 +134,7 @@ fn rejected(site: &Site, all: &[Rejected]) -> Vec<String> {
     let more = nearest.len().saturating_sub(LIMITS);
     let mut out: Vec<String> = nearest.iter().take(LIMITS).map(|(_, one)| one.check.words(site)).collect();
     if more > 0 {
-        let kinds = if more == 1 { "kind" } else { "kinds" };
-        out.push(format!("and {more} more {kinds} of limit"));
+        out.push(format!("and {more} more"));
     }
     out
 }

@@ -7,14 +7,19 @@ use crate::tasks::note::NoteAnswer;
 use crate::tasks::season::{SeasonAnswer, SeasonRun};
 use crate::units::say;
 
+use super::pictures;
+
 pub(super) fn blocks(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
     let mut out = vec![Block::Heading(2, "The season ahead".to_owned())];
     match &answer.season {
         Err(why) => out.push(Block::Words(format!("No season is told: {why}."))),
         Ok(season) => {
-            out.push(Block::Words(of(season)));
-            out.push(Block::Table(cases(season)));
-            out.extend(reserves(context).map(Block::Words));
+            let plan = std::iter::once(of(season)).chain(reserves(context));
+            out.push(Block::Words(plan.collect::<Vec<_>>().join(" ")));
+            out.push(match pictures::days(context, season) {
+                Some(picture) => Block::Beside(cases(season), Box::new(picture)),
+                None => Block::Table(cases(season)),
+            });
         }
     }
     out

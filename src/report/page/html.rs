@@ -3,7 +3,7 @@
 
 use std::fmt::{self, Display, Write as _};
 
-use super::picture::{ALONE, BELOW, PAIRED, Size, drawn};
+use super::picture::{ALONE, BELOW, BESIDE, PAIRED, Size, drawn};
 use super::table::Squared;
 use super::{Block, Page, Picture, clean, joined};
 
@@ -28,6 +28,11 @@ impl Display for Escaped<'_> {
         Ok(())
     }
 }
+
+/// A cell of so few letters stays on one line where the paper has the room (choice): two figures in two units do.
+const SHORT: usize = 26;
+/// The head of a row, the same (choice): a name with its place does.
+const NAME: usize = 40;
 
 /// The piece as HTML.
 pub(super) fn written(page: &Page) -> String {
@@ -77,6 +82,13 @@ fn one(block: &Block) -> String {
             format!("<ul class=\"blanks\">\n{}</ul>\n", joined(labels, line))
         }
         Block::Picture(picture) => figure(picture, ALONE),
+        Block::Beside(table, picture) => {
+            format!(
+                "<div class=\"beside\">\n{}{}</div>\n",
+                rows(&Squared::of(table)),
+                figure(picture, BESIDE)
+            )
+        }
         Block::Sheet => "</section>\n<section class=\"sheet\">\n".to_owned(),
     }
 }
@@ -109,6 +121,14 @@ fn figure(picture: &Picture, size: Size) -> String {
 
 fn rows(table: &Squared) -> String {
     let class = |column: usize| if table.is_right(column) { " class=\"right\"" } else { "" };
+    let class_of = |column: usize, cell: &str| {
+        let most = if column == 0 { NAME } else { SHORT };
+        match (table.is_right(column), cell.chars().count() <= most) {
+            (true, _) => " class=\"right\"",
+            (false, true) => " class=\"short\"",
+            (false, false) => "",
+        }
+    };
     let mut out = "<table>\n".to_owned();
     let _ = writeln!(out, "<caption>{}</caption>", Escaped(&table.caption));
     out.push_str("<thead><tr>");
@@ -120,7 +140,7 @@ fn rows(table: &Squared) -> String {
         out.push_str("<tr>");
         for (column, cell) in row.iter().enumerate() {
             let (name, scope) = if column == 0 { ("th", " scope=\"row\"") } else { ("td", "") };
-            let _ = write!(out, "<{name}{scope}{}>{}</{name}>", class(column), Escaped(cell));
+            let _ = write!(out, "<{name}{scope}{}>{}</{name}>", class_of(column, cell), Escaped(cell));
         }
         out.push_str("</tr>\n");
     }

@@ -33,6 +33,9 @@ fn one(block: &Block) -> String {
         Block::Picture(picture) => {
             format!("> {} {}\n", bold(&format!("Picture: {}", picture.title)), escaped(&picture.words))
         }
+        Block::Beside(table, picture) => {
+            format!("{}\n{}", rows(&Squared::of(table)), one(&Block::Picture(picture.clone())))
+        }
         Block::Sheet => "---\n".to_owned(),
     }
 }

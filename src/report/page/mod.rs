@@ -64,6 +64,8 @@ pub enum Block {
     Blanks(Vec<String>),
     /// A picture; formats that show none tell its words.
     Picture(Box<Picture>),
+    /// A table with a picture of what it tells; side by side where the paper has the room.
+    Beside(Table, Box<Picture>),
     /// A new sheet begins.
     Sheet,
 }

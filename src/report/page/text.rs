@@ -37,6 +37,9 @@ fn one(block: &Block) -> String {
         Block::Table(table) => rows(&Squared::of(table)),
         Block::Blanks(labels) => labels.iter().map(|label| blank(label)).collect::<Vec<_>>().join("\n"),
         Block::Picture(picture) => hung("  ", &format!("Picture: {}. {}", picture.title, picture.words)),
+        Block::Beside(table, picture) => {
+            format!("{}\n{}", rows(&Squared::of(table)), one(&Block::Picture(picture.clone())))
+        }
         Block::Sheet => format!("{}\n", "=".repeat(WIDTH)),
     }
 }

@@ -22,7 +22,11 @@ pub fn applied(site: &Site, system: System) -> Option<String> {
 
 /// The same, quantities as [`say`](crate::units::say) marks them.
 pub(in crate::report) fn applied_words(site: &Site) -> Option<String> {
-    let learned = site.learned()?;
+    site.learned().map(|learned| format!("{}, is applied", values(site, learned)))
+}
+
+/// What was learned and of which days, quantities as [`say`](crate::units::say) marks them.
+pub(in crate::report) fn values(site: &Site, learned: &Learned) -> String {
     let mut values = Vec::new();
     values.extend(learned.bias_c.map(|bias_c| format!("bias {}", say::dc(bias_c, 2).signed())));
     values.extend(learned.by_level_c.iter().filter_map(|(level, bias_c)| {
@@ -34,7 +38,7 @@ pub(in crate::report) fn applied_words(site: &Site) -> Option<String> {
         values.push("scatter of its own".to_owned());
     }
     let window = learned.window.map_or_else(String::new, |(from, to)| format!(", {from} to {to}"));
-    Some(format!("{}, of {} days{window}, is applied", values.join(", "), learned.n))
+    format!("{}, of {} days{window}", values.join(", "), learned.n)
 }
 
 /// What is applied, and the release without it; `None` where nothing was learned.

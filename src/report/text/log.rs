@@ -58,7 +58,7 @@ fn happened(context: &Context, past: &Past) -> String {
     let (Some(first), Some(last)) = (past.days.first(), past.days.last()) else { return String::new() };
     let held = past.temperature.all.n.max(past.oxygen.all.n);
     let words = format!(
-        "What happened, {} to {}: {held} of {} days can be held against the gauge",
+        "What happened, {} to {}: {held} of {} days can be held against the gauge, each with a band computed anew",
         first.date,
         last.date,
         past.days.len()
@@ -70,7 +70,7 @@ fn happened(context: &Context, past: &Past) -> String {
     }
     out.push('\n');
     out.push_str(&section("Left out", indented(left_out(past))));
-    out.push_str(&section("Outside the band", indented(spells(context, past))));
+    out.push_str(&section("Outside the band of the day", indented(spells(context, past))));
     out.push_str(&section("The season gone through again", indented(hindcast(context, past))));
     out.push_str(&section("What the record teaches", indented(learning(context, past))));
     out.push_str(&section(
@@ -112,6 +112,8 @@ pub fn logged(context: &Context, logged: &Logged) -> String {
     let (site, system) = (context.site(), context.system);
     let mut out = String::new();
     let file = harmless(&logged.appended.path.display().to_string());
+    // before the rest: a limit that is broken is not to be scrolled past
+    let known = list("To know", &flags_of(&logged.said), true, system);
     match &logged.appended.line {
         Line::Decision(decision) => {
             let what = match decision.amends {
@@ -120,6 +122,7 @@ pub fn logged(context: &Context, logged: &Logged) -> String {
                 None => format!("decision {}", decision.id),
             };
             out.push_str(&labelled("Logged", &format!("{what}, on the disk in {file}")));
+            out.push_str(&known);
             for (label, words) in body(site, decision, system) {
                 out.push_str(&labelled(label, &words));
             }
@@ -127,9 +130,9 @@ pub fn logged(context: &Context, logged: &Logged) -> String {
         Line::Event(event) => {
             out.push_str(&labelled("Logged", &format!("event {}, on the disk in {file}", event.id)));
             out.push_str(&labelled("Event", &event_words(site, event)));
+            out.push_str(&known);
         }
     }
-    out.push_str(&list("To know", &flags_of(&logged.said), true, system));
     out.push_str(&wrapped(caution(), 0));
     out
 }

@@ -27,7 +27,8 @@ pub(super) fn decided(
         let said = answer.mix.warnings.clone();
         (Way::of_mix(context, Which::Tried, &answer), answer.setting, said)
     };
-    said.retain(|problem| problem.kind == "limit" || problem.kind == "not-a-position");
+    // what makes the gates other than they should be, or than somebody named them
+    said.retain(|p| matches!(p.kind, "limit" | "not-a-position" | "opening-assumed" | "event"));
     let site = context.site();
     let mixes = ranking.mixes.iter().map(|shown| considered(site, shown));
     let decision = Decision {

@@ -20,7 +20,7 @@ use super::{Context, Failure};
 pub(super) use asked::date;
 pub use asked::{DecisionAsked, EventAsked};
 pub(super) use decided::gates;
-pub use past::{Cause, Hindcast, Past, PastDay, Scored, Spell, Turned, past, past_within};
+pub use past::{Cause, Hindcast, Past, PastDay, Scored, Skill, Spell, Turned, past, past_within, skill};
 
 /// What was written.
 #[derive(Debug, Clone, PartialEq)]

@@ -17,8 +17,8 @@ use chrono::NaiveDate;
 use crate::problem::Problem;
 use crate::rank::Progress;
 pub use crate::record::Cause;
-use crate::record::{Learned, Learning, Left, Pair, Row, Score, Scores, learn, pairs, scores};
-use crate::series::Daily;
+use crate::record::{Learned, Learning, Left, Pair, Paired, Row, Score, Scores, learn, pairs, scores};
+use crate::series::{Daily, Record};
 use crate::target::DAM;
 use crate::tasks::{Context, Failure};
 
@@ -151,6 +151,30 @@ pub fn past(context: &Context, progress: Progress) -> Result<Past, Failure> {
     past_within(context, (NaiveDate::MIN, NaiveDate::MAX), progress)
 }
 
+/// How well the release was foreseen, and what the record teaches: the past without its seasons gone through again.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Skill {
+    /// Temperature, with nothing learned.
+    pub temperature: Score,
+    /// And oxygen.
+    pub oxygen: Score,
+    /// What can be learned from it.
+    pub learning: Learning,
+}
+
+/// How well the release was foreseen up to the date of the answer.
+///
+/// # Errors
+/// As [`past`].
+pub fn skill(context: &Context, progress: Progress) -> Result<Skill, Failure> {
+    let tellers = Tellers::of(context);
+    let (gauges, nothing) = (gauges(context), Daily::default());
+    let gauge = gauges.get(DAM).unwrap_or(&nothing);
+    let days = known(context, &tellers, &casts(context), gauge);
+    let (paired, learning) = taught(context, &days, gauge, progress)?;
+    Ok(Skill { temperature: scores(&warmth(&paired)).all, oxygen: scores(&breath(&paired)).all, learning })
+}
+
 /// The same of the days of a span alone; what the record teaches is taken from all of it.
 ///
 /// # Errors
@@ -162,26 +186,16 @@ pub fn past_within(
 ) -> Result<Past, Failure> {
     let site = context.site();
     let tellers = Tellers::of(context);
-    let gauges: BTreeMap<String, Daily> = context
-        .conditions
-        .observed
-        .iter()
-        .map(|(point, record)| (point.clone(), record.daily(site.offset, site.coverage)))
-        .collect();
-    let nothing = Daily::default();
+    let (gauges, nothing) = (gauges(context), Daily::default());
     let gauge = gauges.get(DAM).unwrap_or(&nothing);
     let casts = casts(context);
     let mut days = known(context, &tellers, &casts, gauge);
-    let told: Vec<_> = days.iter().map(Known::day).collect();
-    let mut paired = pairs(site, &told, gauge, &|done| progress(DAYS * done)).ok_or(Failure::Stopped)?;
-    let learning = learn(site, &paired.pairs, site.learning_days);
+    let (mut paired, learning) = taught(context, &days, gauge, &|done| progress(DAYS * done))?;
     let later = |done: f64| progress(DAYS + (1.0 - DAYS) * done);
     let hindcast = hindcast(context, &tellers, &casts, gauge, &later)?;
     let is_inside = |date: NaiveDate| (span.0..=span.1).contains(&date);
     days.retain(|day| is_inside(day.date));
     paired.keep(&is_inside);
-    let warmth: Vec<_> = paired.pairs.iter().map(Pair::temperature_row).collect();
-    let breath: Vec<_> = paired.pairs.iter().map(Pair::oxygen_row).collect();
     let computed: BTreeMap<NaiveDate, &Pair> =
         paired.pairs.iter().chain(&paired.beside).map(|pair| (pair.date, pair)).collect();
     let with_applied = applied(site, &days, &computed);
@@ -199,8 +213,8 @@ pub fn past_within(
     Ok(Past {
         days: shown,
         decisions: turned(&tellers, &days, &gauges),
-        temperature: scores(&warmth),
-        oxygen: scores(&breath),
+        temperature: scores(&warmth(&paired)),
+        oxygen: scores(&breath(&paired)),
         with_applied: scored(&paired.pairs, &with_applied),
         with_learned: with(&paired.pairs, &learning.learned),
         left_out: paired.left_out,
@@ -209,6 +223,35 @@ pub fn past_within(
         hindcast,
         notes: tellers.notes,
     })
+}
+
+/// What every gauge read, by day.
+fn gauges(context: &Context) -> BTreeMap<String, Daily> {
+    let site = context.site();
+    let daily = |record: &Record| record.daily(site.offset, site.coverage);
+    context.conditions.observed.iter().map(|(point, record)| (point.clone(), daily(record))).collect()
+}
+
+/// The days held against the gauge, and what they teach.
+fn taught(
+    context: &Context,
+    days: &[Known],
+    gauge: &Daily,
+    progress: Progress,
+) -> Result<(Paired, Learning), Failure> {
+    let site = context.site();
+    let told: Vec<_> = days.iter().map(Known::day).collect();
+    let paired = pairs(site, &told, gauge, progress).ok_or(Failure::Stopped)?;
+    let learning = learn(site, &paired.pairs, site.learning_days);
+    Ok((paired, learning))
+}
+
+fn warmth(paired: &Paired) -> Vec<Row> {
+    paired.pairs.iter().map(Pair::temperature_row).collect()
+}
+
+fn breath(paired: &Paired) -> Vec<Row> {
+    paired.pairs.iter().map(Pair::oxygen_row).collect()
 }
 
 /// The scores of pairs with what was learned put to them; `None` where nothing was.

@@ -12,6 +12,7 @@ use crate::mix::Setting;
 use crate::order::{Manner, NoOrder, Order, Question, order};
 use crate::rank::Progress;
 
+use super::log::{Skill, skill};
 use super::mix::same;
 use super::rank::{RankAnswer, RankAsked};
 use super::river::{RiverAnswer, downstream};
@@ -25,9 +26,9 @@ use begins::begins;
 use ready::Ready;
 use subject::{About, about};
 
-/// Share of the progress that the ranking takes, and with the season after it (choice).
-const RANKING: f64 = 0.4;
-const SEASON: f64 = 0.9;
+/// Share of the progress that the ranking takes, and with the season after it; the rest is the past (choice).
+const RANKING: f64 = 0.3;
+const SEASON: f64 = 0.8;
 
 /// What a note is asked, as typed.
 #[derive(Debug, Clone, Default, PartialEq)]
@@ -72,6 +73,8 @@ pub struct NoteAnswer {
     pub river: RiverAnswer,
     /// What the change does to the stage at each point of the river.
     pub stages: Vec<StageChange>,
+    /// How well the release of past days was foreseen.
+    pub skill: Skill,
     /// The season in its cases, or why there is none.
     pub season: Result<SeasonAnswer, String>,
     /// When the change begins.
@@ -104,6 +107,7 @@ pub fn note(context: &Context, asked: &NoteAsked, progress: Progress) -> Result<
     let context = &context;
     let begins = begins(context, asked.at.as_deref(), decided.as_ref().map(|decided| decided.0))?;
     let season = ahead(context, asked, &|done| progress(RANKING + (SEASON - RANKING) * done))?;
+    let skill = skill(context, &|done| progress(SEASON + (1.0 - SEASON) * done))?;
     let before = now_setting(context).map_err(|failure| match subject {
         Subject::Decision(id) if context.set_before.is_some() => {
             format!("decision {id} was logged without it")
@@ -155,6 +159,7 @@ pub fn note(context: &Context, asked: &NoteAsked, progress: Progress) -> Result<
         ranked,
         river,
         stages,
+        skill,
         season,
         begins,
         stands,

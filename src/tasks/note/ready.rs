@@ -5,7 +5,6 @@ use chrono::{DateTime, FixedOffset};
 use crate::mix::limits::{Check, Group};
 use crate::order::{NoOrder, Order};
 use crate::problem::{Problem, Weight};
-use crate::record::line::Event;
 use crate::site::Site;
 use crate::tasks::{Context, Freshness, MixAnswer, Understood};
 use crate::units::say;
@@ -48,7 +47,8 @@ impl Ready<'_> {
             None => {}
         }
         out.extend(cannot);
-        out.extend(self.lasting());
+        let lasting = self.context.lasting(self.begins.date_naive());
+        out.extend(lasting.map(|event| format!("event {} of the log lasts: {}", event.id, event.text)));
         out.extend(self.as_warned("not-a-position"));
         let weighty: Vec<String> =
             self.not_checked.iter().filter(|one| one.weighs()).map(Unchecked::words).collect();
@@ -97,7 +97,7 @@ impl Ready<'_> {
             out.extend(self.stale());
         }
         let kept = |p: &&Problem| {
-            p.weight == Weight::Flag && !matches!(p.kind, "limit" | "not-a-position" | "stale" | "later")
+            p.weight == Weight::Flag && !matches!(p.kind, "limit" | "not-a-position" | "stale" | "later" | "event")
         };
         out.extend(self.mix.mix.warnings.iter().filter(kept).map(|p| p.words.clone()));
         out.extend(self.as_warned("opening-assumed"));
@@ -107,16 +107,6 @@ impl Ready<'_> {
         out.extend(self.context.profile.flags.iter().filter(kept).map(|p| p.words.clone()));
         out.dedup();
         out
-    }
-
-    /// Events of the log that last when the change begins: a gate that failed may be one of those to move.
-    fn lasting(&self) -> impl Iterator<Item = String> {
-        let date = self.begins.date_naive();
-        let events = self.context.log.log.events().into_iter();
-        let lasts = move |event: &&Event| {
-            event.from.date_naive() <= date && event.until.is_none_or(|until| date <= until)
-        };
-        events.filter(lasts).map(|event| format!("event {} of the log lasts: {}", event.id, event.text))
     }
 
     /// Points whose stage would fall faster than it may.

@@ -116,7 +116,7 @@ pub fn rank(
     let (blocks, release_from) = asked::release(context, asked, now.as_ref())?;
     notes.extend(spill(context, &blocks));
     notes.extend(context.rules_off());
-    notes.extend(context.learned_flags());
+    notes.extend(context.record_flags());
     if site.aerates() {
         let words = "oxygen is told and held against targets below the dam, with what the conduits add";
         notes.push(Problem::note("oxygen-gain", words));

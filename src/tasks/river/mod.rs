@@ -115,7 +115,7 @@ pub fn downstream(
             .iter()
             .cloned()
             .chain(context.rules_off())
-            .chain(context.learned_flags())
+            .chain(context.record_flags())
             .chain(notes(context))
             .collect(),
     };

@@ -28,7 +28,7 @@ pub(super) fn notes(context: &Context, of: &Understood) -> Vec<Problem> {
         Problem::note("plan-past", words)
     }));
     out.extend(context.rules_off());
-    out.extend(context.learned_flags());
+    out.extend(context.record_flags());
     out.push(Problem::note("cases", cases(&of.cases)));
     if !context.site().blocks.is_empty() {
         let words = "the blocks of the day are not looked at: every day releases evenly what the plan asks";

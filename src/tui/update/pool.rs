@@ -149,6 +149,3 @@ fn used(model: &mut Model) -> Vec<Effect> {
     say(model, format!("pool, mix and rank stand on the cast of {name}; u takes it back"));
     effects
 }
-
-#[cfg(test)]
-mod tests;

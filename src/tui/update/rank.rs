@@ -232,6 +232,3 @@ fn part_words(context: &Context, mix: &Mix) -> String {
         None => String::new(),
     }
 }
-
-#[cfg(test)]
-mod tests;

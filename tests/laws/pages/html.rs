@@ -114,7 +114,8 @@ fn every(text: &str) -> Result<(), TestCaseError> {
         }
     }
     let cells: Vec<String> = all(&html, "th, td").into_iter().map(said).collect();
-    prop_assert_eq!(cells, [&want, &want, &want, &want, &want, ""].map(|s: &str| s.to_owned()));
+    let table = [&want, &want, &want, &want, &want, ""];
+    prop_assert_eq!(cells, table.repeat(2).into_iter().map(str::to_owned).collect::<Vec<_>>());
     prop_assert_eq!(said(all(&html, ".warning")[0]), shown(&format!("Warning: {want}")));
     prop_assert_eq!(said(all(&html, ".blanks span")[0]), want);
     prop_assert_eq!(all(&html, "svg").len(), 3);
@@ -135,9 +136,12 @@ fn scenario_a_piece_stands_by_itself() {
     let policy = all(&html, "meta[http-equiv=Content-Security-Policy]")[0].attr("content");
     assert_eq!(policy, Some("default-src 'none'; style-src 'unsafe-inline'"));
     assert_eq!(all(&html, "section").len(), 2);
-    assert_eq!(all(&html, "section.sheet figure").len(), 4);
+    assert_eq!(all(&html, "section.sheet figure").len(), 5);
+    assert_eq!(all(&html, ".beside > table + figure").len(), 1);
+    // a short cell is kept on one line, a long one is not
+    assert!(all(&html, "td.short").iter().any(|cell| said(*cell) == "2026-07-01 08:30 -08:00"));
     assert_eq!(all(&html, "section.sheet .pictures figure.half").len(), 2);
-    assert_eq!(all(&html, "tbody tr").len(), 6);
+    assert_eq!(all(&html, "tbody tr").len(), 7);
 }
 
 proptest! {

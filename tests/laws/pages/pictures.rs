@@ -43,7 +43,7 @@ fn scenario_pictures_name_what_they_show() {
             assert!(pictures[at].iter().any(|w| w == word), "{word} in {:?}", pictures[at]);
         }
     };
-    assert_eq!(pictures.len(), 4);
+    assert_eq!(pictures.len(), 5);
     has(
         0,
         &[

@@ -23,6 +23,12 @@ pub(super) fn ordinary() -> Page {
             .collect(),
         right: vec![0, 5],
     };
+    let small = Table {
+        caption: "Cases".into(),
+        head: vec!["Case".into(), "Cold water runs out".into()],
+        rows: vec![vec!["dry".into(), "2026-10-20".into()]],
+        right: vec![],
+    };
     Page {
         title: "Change order: invented dam".into(),
         blocks: vec![
@@ -46,13 +52,22 @@ pub(super) fn ordinary() -> Page {
             picture("The season in its cases", days()),
             Block::Heading(2, "Alone".into()),
             picture("What was expected and what came", days()),
+            beside(small, "The season, told twice", days()),
         ],
     }
 }
 
 fn picture(title: &str, shows: Shows) -> Block {
+    Block::Picture(Box::new(titled(title, shows)))
+}
+
+fn beside(table: Table, title: &str, shows: Shows) -> Block {
+    Block::Beside(table, Box::new(titled(title, shows)))
+}
+
+fn titled(title: &str, shows: Shows) -> Picture {
     let words = "Bed at 1,180 ft, surface at 1,468 ft; surface water 71 F, deepest water 42 F. ".repeat(2);
-    Block::Picture(Box::new(Picture { title: title.into(), words, shows }))
+    Picture { title: title.into(), words, shows }
 }
 
 fn pool() -> Shows {
@@ -125,6 +140,12 @@ fn days() -> Shows {
 /// A piece with one text in every place that holds text.
 pub(super) fn with(text: &str) -> Page {
     let t = || text.to_owned();
+    let table = || Table {
+        caption: t(),
+        head: vec![t(), t()],
+        rows: vec![vec![t(), t()], vec![t()]],
+        right: vec![1],
+    };
     let mut blocks = vec![
         Block::Heading(1, t()),
         Block::Heading(9, t()),
@@ -132,19 +153,16 @@ pub(super) fn with(text: &str) -> Page {
         Block::Warning(t()),
         Block::List(vec![t(), t()]),
         Block::Facts(vec![(t(), t())]),
-        Block::Table(Table {
-            caption: t(),
-            head: vec![t(), t()],
-            rows: vec![vec![t(), t()], vec![t()]],
-            right: vec![1],
-        }),
+        Block::Table(table()),
         Block::Blanks(vec![t()]),
         Block::Sheet,
     ];
-    for shows in [named(pool(), text), named(ranges(), text), named(days(), text)] {
+    for shows in [named(pool(), text), named(ranges(), text)] {
         blocks.push(Block::Picture(Box::new(Picture { title: t(), words: t(), shows })));
         blocks.push(Block::Words(t()));
     }
+    let picture = Picture { title: t(), words: t(), shows: named(days(), text) };
+    blocks.push(Block::Beside(table(), Box::new(picture)));
     Page { title: t(), blocks }
 }
 

@@ -47,7 +47,7 @@ pub fn turned(turned: &Turned, system: System) -> Vec<String> {
             (signed(misfit.bias, system), apart(misfit.rmse, system))
         };
         let inside = if score.with_band > 0 {
-            format!(", inside the band on {} of {}", score.inside, score.with_band)
+            format!(", inside the band it wrote on {} of {}", score.inside, score.with_band)
         } else {
             String::new()
         };

@@ -26,7 +26,10 @@ pub(in crate::report) fn by(rule: &Target, by: f64, system: System) -> String {
 /// A sum of degrees over days.
 pub(in crate::report) fn degree_days(c_days: f64, system: System) -> String {
     let unit = system.unit(Dimension::TemperatureDifference);
-    format!("{} {} days", figure(c_days, unit, 0), unit.symbol())
+    let value = unit.from_si(c_days);
+    // what is outside is not told as nothing
+    let decimals = u8::from(value > 0.0 && value < 9.95);
+    format!("{} {} days", figure(c_days, unit, decimals), unit.symbol())
 }
 
 /// The unit of its values in SI, for programs.

@@ -1,13 +1,13 @@
+//! The pool by keys: casts stepped through, laid over and worked with, the cursor, a threshold.
+
 use std::ops::ControlFlow;
 
 use chrono::Utc;
 use crossterm::event::{KeyCode, KeyEvent, KeyModifiers};
 
-use super::super::super::look::Theme;
-use super::super::super::model::{Likes, Model, Session};
-use super::super::super::work::{Lane, Sent, Work};
-use super::super::{Effect, Event, begin, update};
-use crate::tasks::Asked;
+use gatemix::tasks::{self, Asked};
+use gatemix::tui::model::{self, Likes, Model, Session};
+use gatemix::tui::{Effect, Event, Lane, Sent, Theme, Work, begin, update};
 
 /// Does what is asked for until nothing is left; the ranking is left out, and what was asked of it given back.
 fn settle(model: &mut Model, effects: Vec<Effect>) -> Vec<Work> {
@@ -109,17 +109,17 @@ fn scenario_working_with_a_cast_computes_everything_on_it_as_if_it_had_been_name
         profile: other.rsplit('/').next().map(str::to_owned),
         ..Asked::default()
     };
-    let named = crate::tasks::open(&asked, clock).unwrap();
+    let named = tasks::open(&asked, clock).unwrap();
     let ranked = press(&mut model, "[w");
     let context = session(&model).context();
     assert_eq!((&context.profile.file, &context.fingerprint), (other, &named.fingerprint));
     assert_eq!((context.age_days, &context.profile.flags), (named.age_days, &named.profile.flags));
     let shown = &session(&model).shown.as_ref().unwrap().on.pool;
-    assert_eq!(format!("{shown:?}"), format!("{:?}", crate::tasks::pool(&named)));
+    assert_eq!(format!("{shown:?}"), format!("{:?}", tasks::pool(&named)));
     assert!(session(&model).looked_at().is_none() && session(&model).is_current());
     // the mixes and the ranking are asked for on the same cast
     let given = session(&model).draft().tries[0].clone();
-    let mix = crate::tasks::mix_given(&named, &super::super::super::model::asked(named.site(), &given));
+    let mix = tasks::mix_given(&named, &model::asked(named.site(), &given));
     let tried = session(&model).tried().unwrap();
     assert_eq!(format!("{:?}", tried.mix), format!("{:?}", mix.unwrap().mix));
     let [Work::Rank { changed, .. }] = &ranked[..] else { panic!("{ranked:?}") };

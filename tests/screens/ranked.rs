@@ -1,14 +1,14 @@
+//! Ranked mixes by keys: taken, lost, asked anew, stopped.
+
 use std::fs;
 use std::ops::ControlFlow;
 
 use chrono::{DateTime, Utc};
 use crossterm::event::{KeyCode, KeyEvent, KeyModifiers};
 
-use crate::tasks::Asked;
-use crate::tui::model::{Likes, Model, Page, Screen};
-use crate::tui::update::{Effect, Event, begin, update};
-use crate::tui::work::Sent;
-use crate::tui::{Lane, Theme};
+use gatemix::tasks::Asked;
+use gatemix::tui::model::{Likes, Model, Page, Screen};
+use gatemix::tui::{Effect, Event, Lane, Sent, Theme, begin, update};
 
 /// A small invented site: three gates, so that one can be lost.
 const SITE: &str = "name: Test Dam (invented)
