@@ -47,10 +47,7 @@ pub(super) fn blocks(context: &Context, answer: &NoteAnswer) -> Vec<Block> {
     }
     let rejected = rejected(site, &answer.ranked.ranking.rejected);
     if !rejected.is_empty() {
-        out.push(Block::Words(format!(
-            "Rejected by, with the nearest miss: {}.",
-            rejected.join("; ")
-        )));
+        out.push(Block::Words(format!("Rejected by, with the nearest miss: {}.", rejected.join("; "))));
     }
     out
 }

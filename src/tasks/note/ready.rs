@@ -97,7 +97,8 @@ impl Ready<'_> {
             out.extend(self.stale());
         }
         let kept = |p: &&Problem| {
-            p.weight == Weight::Flag && !matches!(p.kind, "limit" | "not-a-position" | "stale" | "later" | "event")
+            p.weight == Weight::Flag
+                && !matches!(p.kind, "limit" | "not-a-position" | "stale" | "later" | "event")
         };
         out.extend(self.mix.mix.warnings.iter().filter(kept).map(|p| p.words.clone()));
         out.extend(self.as_warned("opening-assumed"));
