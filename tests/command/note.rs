@@ -338,6 +338,11 @@ fn scenario_what_lasts_by_the_log_stands_before_the_signatures() {
     let words = said(&folder, &[]);
     let (before, _) = words.split_once("Moves, one after the other").unwrap();
     assert!(before.contains("NOT READY FOR SIGNATURE") && before.contains(told), "{before}");
+    // whoever chooses gates is told as well
+    for task in ["rank", "mix"] {
+        let out = run(&[task, folder.named(), "--on", "2025-07-14T11:00"]);
+        assert!(out.out.contains(told), "{task}: {}", out.out);
+    }
     // once it is over it keeps nobody
     assert_eq!(run(&[&event[..], &["2025-07-14", "--amend", "1"]].concat()).code, Some(0));
     assert!(!said(&folder, &["--at", "2025-07-15T08:00"]).contains(told));

@@ -6,7 +6,7 @@ use std::ops::ControlFlow;
 use chrono::{DateTime, NaiveDate, Utc};
 use gatemix::record::{Effect, Verdict};
 use gatemix::site::SetNow;
-use gatemix::tasks::log::{DecisionAsked, decide, past};
+use gatemix::tasks::log::{DecisionAsked, decide, past, skill};
 use gatemix::tasks::{Asked, Context, open};
 
 use super::demo::tessel::{MADE_LATE, TOO_WARM_C};
@@ -23,6 +23,10 @@ fn scenario_the_record_of_the_third_site_teaches_what_was_planted_in_it() {
     assert_eq!(context.log.log.decisions().len(), 10);
     let past = past(&context, &|_| ControlFlow::Continue(())).unwrap();
     let learning = &past.learning;
+    // the short way, for a note, finds the same
+    let skill = skill(&context, &|_| ControlFlow::Continue(())).unwrap();
+    assert_eq!((skill.temperature, skill.oxygen), (past.temperature.all, past.oxygen.all));
+    assert_eq!(format!("{:?}", skill.learning), format!("{learning:?}"));
     let of = |effect: Effect| learning.candidates.iter().find(|c| c.effect == effect).unwrap();
     let bias = of(Effect::Bias);
     assert_eq!(bias.verdict, Verdict::Kept);

@@ -241,7 +241,7 @@ fn data(context: &Context, answer: &NoteAnswer) -> Vec<String> {
     }
     // the season has more inputs, its plans
     let inputs = answer.season.as_ref().map_or(&context.fingerprint, |season| &season.fingerprint);
-    out.push(format!("gatemix {}, {METHOD}; inputs {inputs}.", env!("CARGO_PKG_VERSION"),));
+    out.push(format!("gatemix {}, {METHOD}; inputs {inputs}.", env!("CARGO_PKG_VERSION")));
     out
 }
 
