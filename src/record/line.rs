@@ -172,6 +172,11 @@ pub struct Event {
 }
 
 impl Event {
+    /// That it lasts, in the user's words.
+    pub fn lasts(&self) -> String {
+        format!("event {} of the log lasts: {}", self.id, self.text)
+    }
+
     /// Whether it lasts on a day.
     pub fn covers(&self, date: NaiveDate) -> bool {
         self.from.date_naive() <= date && self.until.is_none_or(|until| date <= until)

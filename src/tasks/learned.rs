@@ -54,9 +54,8 @@ impl Context {
     /// of every level.
     pub fn record_flags(&self) -> Vec<Problem> {
         let event = |event: &Event| {
-            let words = format!("event {} of the log lasts: {}", event.id, event.text);
             let cure = format!("once it is over: gatemix log --event TEXT --amend {} --until DATE", event.id);
-            Problem::flag("event", words, cure)
+            Problem::flag("event", event.lasts(), cure)
         };
         let mut out: Vec<Problem> = self.lasting(self.on.date_naive()).map(event).collect();
         out.extend(self.learned_flags());

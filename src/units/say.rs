@@ -127,7 +127,7 @@ impl Said {
         let volume = LETTERS.iter().find(|known| **known == (self.letter, Dimension::Volume));
         let Some(unit) = volume.map(|(_, dimension)| system.unit(*dimension)) else { return self };
         let value = unit.from_si(self.value_si);
-        let step = 10_f64.powf((value.abs().max(1.0).log10().floor() + 1.0 - MEASURED).max(0.0));
+        let step = 10_f64.powf(value.abs().max(1.0).log10().floor() + 1.0 - MEASURED);
         Self { value_si: unit.to_si((value / step).round() * step), ..self }
     }
 
@@ -338,6 +338,7 @@ mod tests {
         let volume = m3(49_339_274.0, 0).to_string();
         assert_eq!(in_both(&volume, System::Us), "40,000 acre-ft (49,340,000 m3)");
         assert_eq!(in_both(&volume, System::Si), "49,339,274 m3 (40,000 acre-ft)");
+        assert_eq!(in_both(&m3(308.4, 0).to_string(), System::Si), "308 m3 (0.25 acre-ft)");
     }
 
     #[test]

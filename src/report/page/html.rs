@@ -3,7 +3,7 @@
 
 use std::fmt::{self, Display, Write as _};
 
-use super::picture::{ALONE, BELOW, BESIDE, PAIRED, Size, drawn};
+use super::picture::{ALONE, BESIDE, PAIRED, Size, drawn};
 use super::table::Squared;
 use super::{Block, Page, Picture, clean, joined};
 
@@ -99,7 +99,7 @@ fn beside(run: &[Block]) -> String {
         run.iter().filter_map(|b| if let Block::Picture(p) = b { Some(&**p) } else { None }).collect();
     let odd = pictures.len() % 2 == 1;
     let sized = |(at, picture): (usize, &&Picture)| {
-        figure(picture, if odd && at + 1 == pictures.len() { BELOW } else { PAIRED })
+        figure(picture, if odd && at + 1 == pictures.len() { ALONE } else { PAIRED })
     };
     let figures: String = pictures.iter().enumerate().map(sized).collect();
     format!("<div class=\"pictures\">\n{figures}</div>\n")

@@ -5,6 +5,7 @@ use chrono::{DateTime, FixedOffset};
 use crate::mix::limits::{Check, Group};
 use crate::order::{NoOrder, Order};
 use crate::problem::{Problem, Weight};
+use crate::record::line::Event;
 use crate::site::Site;
 use crate::tasks::{Context, Freshness, MixAnswer, Understood};
 use crate::units::say;
@@ -47,8 +48,7 @@ impl Ready<'_> {
             None => {}
         }
         out.extend(cannot);
-        let lasting = self.context.lasting(self.begins.date_naive());
-        out.extend(lasting.map(|event| format!("event {} of the log lasts: {}", event.id, event.text)));
+        out.extend(self.context.lasting(self.begins.date_naive()).map(Event::lasts));
         out.extend(self.as_warned("not-a-position"));
         let weighty: Vec<String> =
             self.not_checked.iter().filter(|one| one.weighs()).map(Unchecked::words).collect();

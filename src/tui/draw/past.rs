@@ -41,7 +41,7 @@ pub enum DayMark {
 impl DayMark {
     /// Each with its sign and its meaning, but for the one that has none.
     pub const SIGNS: [(Self, &'static str, &'static str); 3] = [
-        (Self::Outside, "!", "outside the band"),
+        (Self::Outside, "!", "outside the day's band"),
         (Self::LeftOut, "x", "left out"),
         (Self::Event, "E", "event"),
     ];

@@ -25,8 +25,6 @@ pub(super) const ALONE: Size = Size { wide: 186.0, high: 85.0 };
 pub(super) const PAIRED: Size = Size { wide: 91.0, high: 50.0 };
 /// One with a table beside it.
 pub(super) const BESIDE: Size = Size { wide: 78.0, high: 33.0 };
-/// The odd one below pairs.
-pub(super) const BELOW: Size = Size { wide: 186.0, high: 38.0 };
 
 /// The picture as an SVG element with its title and words. `None` where it holds nothing that can be drawn, so that
 /// only its words are told.

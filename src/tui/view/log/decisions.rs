@@ -53,7 +53,7 @@ fn none(screen: &Screen, width: usize) -> Vec<String> {
 }
 
 /// Heads of the columns.
-const HEAD: [&str; 2] = [" no.  from   bias       inside  by", " no.  from        bias       inside  by"];
+const HEAD: [&str; 2] = [" no.  from   bias     own band  by", " no.  from        bias     own band  by"];
 /// Columns from which the year is told (choice: a name has its room then).
 const YEARS: u16 = 56;
 

@@ -54,8 +54,8 @@ fn figures(screen: &Screen, told: &Told, width: usize, out: &mut Lines) {
     say(out, &words, width, 2, role);
     if let (Some(expected), Some(measured)) = (told.expected, told.measured) {
         let (standing, role) = match told.outside() {
-            Some(true) => (", OUTSIDE the band", Role::Outside),
-            Some(false) => (", inside the band", Role::Inside),
+            Some(true) => (", OUTSIDE the day's band", Role::Outside),
+            Some(false) => (", in the day's band", Role::Inside),
             None => ("", Role::Plain),
         };
         say(out, &format!("difference {}{standing}", screen.by(measured - expected)), width, 2, role);
