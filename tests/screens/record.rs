@@ -257,7 +257,7 @@ fn scenario_a_day_tells_expected_gauge_and_difference_with_and_without_what_is_l
         "2026-06-10, day 41 of 70",
         "expected 11.7 C [11.2 to 12.2 C]",
         "gauge 12.9 C",
-        "difference +1.2 C, OUTSIDE the band",
+        "difference +1.2 C, OUTSIDE the day's band",
         "nothing learned 11.4 C, +1.5 C",
         "decision 4 since 06-08",
     ] {
